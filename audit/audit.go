@@ -1,0 +1,261 @@
+package audit
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"runtime"
+	"sync"
+
+	"barlitre/circuit"
+	"barlitre/circuit/duty"
+)
+
+// Options of Solve; the zero value is good.
+type Options struct {
+	// Progress is told how far the work is, one call at a time, from goroutines of Solve.
+	Progress func(done, total int)
+	// CSV opens the file that takes every time step of one circuit and duty; nil = none
+	// are written. It is called from goroutines of Solve, with the name TableName makes.
+	CSV func(name string) (io.WriteCloser, error)
+}
+
+// Solution is a solved audit file: every circuit over every duty, and what follows.
+type Solution struct {
+	File        *File
+	Conditions  circuit.Conditions
+	Tariff      Tariff
+	Oil, Air    float64 // K
+	Circuits    []*CircuitRun
+	Comparisons []*Comparison
+}
+
+// CircuitRun is one circuit over all duties.
+type CircuitRun struct {
+	Circuit  *circuit.Circuit
+	Proposal bool      // else as found
+	Cost     CostRange // of the retrofit
+	Duties   []*DutyRun
+	Findings []circuit.Finding
+	Year     *Year
+	Heat     *Heat
+	Money    YearCost
+}
+
+// DutyRun is one circuit over one duty.
+type DutyRun struct {
+	Duty        *duty.Duty
+	Balance     *Balance // nil when the circuit could not be solved
+	Certificate circuit.Certificate
+	Peak        circuit.Peak
+	Shortfalls  []circuit.Shortfall
+	Plot        *Plot
+}
+
+// Solve runs every circuit of the file over every duty and draws up the balances.
+// A circuit that cannot be solved keeps its findings, and the others are solved all
+// the same. The error is that of the context, of the oil, or of a CSV file.
+func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
+	s, err := newSolution(f)
+	if err != nil {
+		return nil, err
+	}
+	ctx, cancel := context.WithCancel(ctx)
+	defer cancel()
+	p := &progress{tell: opt.Progress, total: progressParts * len(f.Circuits) * len(f.Duties)}
+	errs := make([]error, len(s.Circuits))
+	room := make(chan struct{}, runtime.GOMAXPROCS(0))
+	var wg sync.WaitGroup
+	for i, c := range s.Circuits {
+		wg.Add(1)
+		go func() {
+			defer wg.Done()
+			room <- struct{}{}
+			defer func() { <-room }()
+			j := &job{solution: s, run: c, number: i + 1, progress: p, csv: opt.CSV}
+			if errs[i] = j.solve(ctx); errs[i] != nil {
+				cancel()
+			}
+		}()
+	}
+	wg.Wait()
+	if err := firstError(errs); err != nil {
+		return nil, err
+	}
+	for _, c := range s.Circuits {
+		c.Year = year(c.Duties)
+		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
+		c.Money = s.Tariff.YearCost(c.Year)
+		c.Findings = append(c.Findings, c.remarks()...)
+		c.Findings = append(c.Findings, circuitCautions(c)...)
+	}
+	s.Comparisons = s.compare()
+	return s, nil
+}
+
+// firstError prefers the error that made the others give up.
+func firstError(errs []error) error {
+	var first error
+	for _, err := range errs {
+		if err != nil && (first == nil || errors.Is(first, context.Canceled)) {
+			first = err
+		}
+	}
+	return first
+}
+
+// job solves one circuit.
+type job struct {
+	solution *Solution
+	run      *CircuitRun
+	number   int
+	progress *progress
+	csv      func(string) (io.WriteCloser, error)
+}
+
+func (j *job) solve(ctx context.Context) error {
+	f, r := j.solution.File, j.run
+	for _, d := range f.Duties {
+		r.Duties = append(r.Duties, &DutyRun{Duty: d})
+	}
+	for _, found := range f.Findings() {
+		if found.Circuit == r.Circuit.Name {
+			j.note("", []circuit.Finding{found})
+		}
+	}
+	if stopped := j.guard("", func() { j.note("", circuit.Check(r.Circuit, f.Axes, f.Duties)) }); stopped ||
+		circuit.AnyStops(r.Findings) {
+		j.progress.add(progressParts * len(f.Duties))
+		return nil
+	}
+	for i, d := range r.Duties {
+		var err error
+		j.guard(d.Duty.Name, func() { err = j.solveDuty(ctx, d, i+1) })
+		if err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// guard keeps an error of the program in one circuit from ending the others: it
+// becomes a finding that stops.
+func (j *job) guard(dutyName string, do func()) (stopped bool) {
+	defer func() {
+		if v := recover(); v != nil {
+			stopped = true
+			j.note(dutyName, []circuit.Finding{{Level: circuit.Stops,
+				Text: fmt.Sprintf("the program met an error of its own (%v); please report it with this file", v)}})
+		}
+	}()
+	do()
+	return false
+}
+
+// note keeps findings, each once, with circuit and duty filled in.
+func (j *job) note(dutyName string, fs []circuit.Finding) {
+	for _, f := range fs {
+		if f.Circuit == "" {
+			f.Circuit = j.run.Circuit.Name
+		}
+		if !j.known(f) {
+			if f.Duty == "" {
+				f.Duty = dutyName
+			}
+			j.run.Findings = append(j.run.Findings, f)
+		}
+	}
+}
+
+func (j *job) known(f circuit.Finding) bool {
+	for _, o := range j.run.Findings {
+		if o.Text == f.Text && o.Block == f.Block && (f.Duty == "" || o.Duty == "" || o.Duty == f.Duty) {
+			return true
+		}
+	}
+	return false
+}
+
+// solveDuty runs the circuit over one duty; the error is that of the context or of a CSV file.
+func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
+	if err := ctx.Err(); err != nil {
+		return err
+	}
+	c, found := circuit.Compile(j.run.Circuit, j.solution.File.Axes, r.Duty)
+	j.note(r.Duty.Name, found)
+	if c == nil {
+		j.progress.add(progressParts)
+		return nil
+	}
+	params, series := c.Defaults(), c.Series(r.Duty)
+	steps := len(series.T)
+	ledger := NewLedger(c.Channels(), ShaftSignals(j.run.Circuit, c.Signals()), steps)
+	watch, plot := c.NewWatch(params), newRecorder(c.Signals(), c.Channels(), steps)
+	sinks := circuit.Receivers{ledger, watch, plot, &stepCounter{progress: j.progress, of: steps}}
+	table, err := j.openTable(c, r, number)
+	if err != nil {
+		return err
+	}
+	if table != nil {
+		sinks = append(sinks, table)
+	}
+	_, cert, err := circuit.Run(ctx, c, params, series, j.solution.Conditions, circuit.State{}, sinks)
+	if table != nil {
+		if failed := table.close(); failed != nil {
+			return failed
+		}
+	}
+	if ctx.Err() != nil {
+		return ctx.Err()
+	}
+	if err != nil {
+		j.note(r.Duty.Name, []circuit.Finding{{Level: circuit.Stops, Text: err.Error()}})
+		return nil
+	}
+	r.Certificate, r.Plot = cert, plot.plot
+	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls()
+	r.Balance = ledger.Balance(r.Duty.Repeats)
+	j.note(r.Duty.Name, watch.Findings(r.Duty.Name))
+	return nil
+}
+
+// tableFile is a table with the file below it. It remembers its first error and
+// lets the run go on to its end.
+type tableFile struct {
+	*StepTable
+	name string
+	file io.Closer
+	err  error
+}
+
+func (j *job) openTable(c *circuit.Compiled, r *DutyRun, number int) (*tableFile, error) {
+	if j.csv == nil {
+		return nil, nil
+	}
+	name := TableName(j.number, j.run.Circuit.Name, number, r.Duty.Name)
+	w, err := j.csv(name)
+	if err != nil {
+		return nil, fmt.Errorf("open %s: %w", name, err)
+	}
+	t, err := NewStepTable(w, c.Signals())
+	if err != nil {
+		return nil, errors.Join(fmt.Errorf("%s: %w", name, err), w.Close())
+	}
+	return &tableFile{StepTable: t, name: name, file: w}, nil
+}
+
+// Sample writes one row, unless an earlier one could not be written.
+func (t *tableFile) Sample(s *circuit.Sample) error {
+	if t.err == nil {
+		t.err = t.StepTable.Sample(s)
+	}
+	return nil
+}
+
+func (t *tableFile) close() error {
+	if err := errors.Join(t.err, t.StepTable.Close(), t.file.Close()); err != nil {
+		return fmt.Errorf("%s: %w", t.name, err)
+	}
+	return nil
+}

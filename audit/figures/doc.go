@@ -1,0 +1,20 @@
+// Package figures draws what an audit shows in pictures: the loss steps of
+// circuits on one scale, plots over the duty cycle, and bars that compare
+// before with after. It decides nothing: every number and sentence is given.
+//
+// Figures are drawn on a pen.Pen, so window and PDF show the same. They are laid
+// out in figure units (a pixel at scale 1); text is 12.5, 11 and 14 units high.
+// On paper the caller sets the scale around them:
+//
+//	p.Push(20, 40, 0.24) // mm; text of 12.5 units becomes 3 mm
+//	regions := steps.Draw(p, 170/0.24, steps.Height(), figures.Light)
+//	p.Pop()
+//
+// A figure fills the width it is given and never leaves its rectangle. If the
+// height is less than it needs, all of it is drawn smaller. No label lies on
+// another: what collides moves, what is too long ends in an ellipsis, and what
+// finds no room at all is left out. Numbers that are NaN or infinite are drawn
+// as missing. Nothing here panics.
+//
+// The places of what can be pointed at are returned, in the units of the caller.
+package figures

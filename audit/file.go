@@ -1,0 +1,244 @@
+package audit
+
+import (
+	"fmt"
+	"os"
+	"path/filepath"
+	"slices"
+
+	"gopkg.in/yaml.v3"
+
+	"barlitre/circuit"
+	"barlitre/circuit/duty"
+	"barlitre/circuit/recording"
+)
+
+// Format is the first line of an audit file: `format: barlitre/1`.
+const Format = "barlitre/1"
+
+// File is an audit file: a machine's circuits, the duties they must do, and
+// what energy costs. It is made by Read or Parse and changed by Set, SetAt and
+// SetPoint only, which keep the text in step.
+//
+// # Format
+//
+// An audit file is YAML in UTF-8, without anchors, tags or a second document.
+// Keys are as below; an unknown key is a fault. Comments, order and layout are
+// kept when the program changes a value.
+//
+//	format: barlitre/1            needed
+//	title: text
+//	site: {name, customer, author, date, note: text, currency: EUR}
+//	oil: ...                      needed, see below
+//	air: {temperature: 30 C}      around the tank
+//	energy: {price: 0.18 EUR/kWh, co2: 0.35 kg/kWh, co2_year: 2024,
+//	         co2_basis: location | market, credit_returned: no}
+//	axes: {ram: linear, drum: rotary}
+//	duties:                       a list, needed
+//	circuits:                     a list, needed
+//
+// A quantity is a number with a decimal point and a unit, "160 bar", as read by
+// units.Parse; or a mapping, when more is known of it:
+//
+//	{value: 160 bar, origin: measured | name plate | data sheet | assumed,
+//	 low: 150, high: 165 bar, note: text}
+//
+// low and high without a unit are in the unit of the value. A text that reads as
+// a number ("2024") is written in quotes. yes, no, true and false are one thing.
+//
+// Oil is given in one of two ways. With its dynamic viscosity, which then holds
+// at the working temperature, as does the density:
+//
+//	oil: {temperature: 50 C, density: 870 kg/m3, viscosity: 40 mPa s}
+//
+// or with its grade; density is then the one at 15 °C (optional), and the
+// viscosity index, or the kinematic viscosities at 40 and 100 °C, may be given:
+//
+//	oil: {grade: ISO VG 46, temperature: 50 C, viscosity_index: 100}
+//	oil: {grade: ISO VG 46, temperature: 50 C, viscosity_40: 46 mm2/s, viscosity_100: 6.8 mm2/s}
+//
+// Where both a viscosity and a grade are given, the viscosity and the density
+// hold at the working temperature, and the grade says how they change with it.
+//
+// A duty:
+//
+//   - name: day shift
+//     hours: 3000 h               a year; 0 when not given
+//     repeats: yes                the cycle follows itself without pause; yes when not given
+//     step: 10 ms                 between time steps; when not given a thousandth of the
+//     cycle, rounded to 1, 2 or 5, at most 10 ms
+//     points: {t: [0 s, 2 s], ram.speed: [0 m/s, 0.15 m/s], "ram.load [kN]": [5, 5]}
+//     phases: {approach: 0 s, press: 2.1 s}
+//
+// In place of points stands `file: press.csv`, a table beside the audit file (or
+// in a folder below it) whose head has the same names with their units: see
+// recording.ReadTable. A track is axis.speed, axis.position, axis.load,
+// axis.command, or block.command for a block that is commanded by itself.
+//
+// A circuit:
+//
+//   - name: As found
+//     role: as found | proposal   when not given: the first is as found, others are proposals
+//     note: text
+//     pump_at_rest: keep | unload | stop
+//     retrofit_cost: {low: 20000 EUR, likely: 26000 EUR, high: 35000 EUR, note: text}
+//     blocks:
+//     RV1: {kind: relief, crack: 160 bar, at: [12, 30], turn: 0, mirror: no}
+//     lines: [P1.P - V1.P - RV1.P]
+//
+// A block is its kind, the parameters of that kind (see circuit.Catalog), and its
+// place on the sheet. Its id is made of letters, digits and _. A line joins the
+// ports it names. retrofit_cost is for proposals; low and high go together.
+type File struct {
+	Path  string // where it was read from; "" when it has no file yet
+	Title string
+	Site  Site
+	Oil   Oil
+
+	Air    circuit.Value // K, around the tank
+	HasAir bool
+
+	Price          circuit.Value // money per J
+	HasPrice       bool
+	CO2            circuit.Value // kg per J
+	HasCO2         bool
+	CO2Year        int    // 0 = not given
+	CO2Basis       string // "location", "market" or "" when not given
+	CreditReturned bool   // energy returned to the mains is paid for
+
+	Axes     []duty.Axis
+	Duties   []*duty.Duty
+	Sources  []Source // by duty; the zero Source where the points stand in the audit file
+	Circuits []CircuitEntry
+
+	data   []byte
+	root   *yaml.Node // the top mapping, or nil
+	open   Open
+	tables map[string]*recording.Table
+	found  []circuit.Finding
+}
+
+// Site says whose machine it is, for the report.
+type Site struct {
+	Name, Customer, Author, Date, Note string
+	Currency                           string // three letters; that of the energy price when not given
+}
+
+// Oil is what the file says of the oil.
+type Oil struct {
+	Grade                                                      string
+	Temperature, Density, Viscosity, Viscosity40, Viscosity100 circuit.Value // K, kg/m³, Pa·s, m²/s, m²/s
+	VI                                                         circuit.Value // viscosity index
+	HasTemperature, HasDensity                                 bool
+	HasViscosity, HasViscosity40, HasViscosity100, HasVI       bool
+}
+
+// Source names the recording that a duty was taken from.
+type Source struct{ File, SHA256 string }
+
+// Role says what a circuit stands for.
+type Role string
+
+// The two roles.
+const (
+	AsFound  Role = "as found"
+	Proposal Role = "proposal"
+)
+
+// Cost is what a proposal costs to build, once.
+type Cost struct {
+	Low, Likely, High circuit.Value // money; all alike when no range was given
+	Given             bool
+	Note              string
+}
+
+// CircuitEntry is a circuit with its part in the audit.
+type CircuitEntry struct {
+	*circuit.Circuit
+	Role Role
+	Cost Cost
+}
+
+// Open reads a file that an audit file names, by its path relative to the audit
+// file, with forward slashes.
+type Open func(name string) ([]byte, error)
+
+// maxSize bounds what is read as an audit file; one with a hundred circuits
+// stays well below a megabyte.
+const maxSize = 16 << 20
+
+// Read reads an audit file and the recordings beside it. All faults are found at
+// once, each with its line. The File is nil only when the text is not YAML or not
+// of this format; else it holds all that could be read.
+func Read(path string) (*File, []circuit.Finding) {
+	info, err := os.Stat(path)
+	if err == nil && info.Size() > maxSize {
+		err = fmt.Errorf("%s: is %d MB long; an audit file has at most %d MB", path, info.Size()>>20, maxSize>>20)
+	}
+	var data []byte
+	if err == nil {
+		data, err = os.ReadFile(path)
+	}
+	if err != nil {
+		return nil, []circuit.Finding{{Level: circuit.Stops, Text: err.Error()}}
+	}
+	dir := filepath.Dir(path)
+	return Parse(data, func(name string) ([]byte, error) {
+		return os.ReadFile(filepath.Join(dir, filepath.FromSlash(name)))
+	}, path)
+}
+
+// Parse reads an audit file from memory, as Read does; open reads the recordings
+// that it names and may be nil when there are none. path is kept for Save.
+func Parse(data []byte, open Open, path string) (*File, []circuit.Finding) {
+	return parse(data, open, path, map[string]*recording.Table{})
+}
+
+// Circuit returns a circuit by name, or nil.
+func (f *File) Circuit(name string) *CircuitEntry {
+	for i := range f.Circuits {
+		if f.Circuits[i].Name == name {
+			return &f.Circuits[i]
+		}
+	}
+	return nil
+}
+
+// Findings returns what reading the file found, as Read did; after an edit, what
+// reading the edited file finds.
+func (f *File) Findings() []circuit.Finding { return slices.Clone(f.found) }
+
+// Bytes returns the file as it would be saved. Until something is set it is
+// what was read, byte for byte.
+func (f *File) Bytes() []byte { return slices.Clone(f.data) }
+
+// Save writes the file. An existing file is replaced at once or not at all, and
+// keeps its permissions. Recordings are not copied along.
+func (f *File) Save(path string) error {
+	if real, err := filepath.EvalSymlinks(path); err == nil {
+		path = real // replace what a link points to, not the link
+	}
+	mode := os.FileMode(0o644)
+	if info, err := os.Stat(path); err == nil {
+		mode = info.Mode().Perm()
+	}
+	tmp, err := os.CreateTemp(filepath.Dir(path), ".barlitre-*")
+	if err != nil {
+		return fmt.Errorf("save %s: %w", path, err)
+	}
+	defer os.Remove(tmp.Name()) // gone already when all went well
+	_, err = tmp.Write(f.data)
+	for _, step := range []func() error{
+		func() error { return tmp.Chmod(mode) }, tmp.Sync, tmp.Close,
+		func() error { return os.Rename(tmp.Name(), path) },
+	} {
+		if err == nil {
+			err = step()
+		}
+	}
+	if err != nil {
+		tmp.Close() // a second close after a failed one is harmless
+		return fmt.Errorf("save %s: %w; the file is as it was", path, err)
+	}
+	return nil
+}

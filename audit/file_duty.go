@@ -1,0 +1,329 @@
+package audit
+
+import (
+	"errors"
+	"fmt"
+	"io/fs"
+	"math"
+	"path/filepath"
+	"strings"
+
+	"gopkg.in/yaml.v3"
+
+	"barlitre/circuit/duty"
+	"barlitre/circuit/recording"
+	"barlitre/machines/units"
+)
+
+func (r *reader) duties(n, root *yaml.Node) {
+	items := r.items(scope{}, n, "duties", "duties: [{name: day shift, ...}]")
+	if len(items) == 0 && r.isAbsent(n) {
+		r.bad(scope{}, root, "duties", "there is no duty; say what the axes must do over time")
+	}
+	line := map[string]int{}
+	for i, item := range items {
+		name, at := nameOf(item)
+		if name == "" {
+			name = fmt.Sprintf("duty %d", i+1)
+		} else if first, twice := line[name]; twice {
+			r.bad(scope{duty: name}, at, "", "duty %q stands here twice, %s; rename one", name, lines(first, at.Line))
+		} else {
+			line[name] = at.Line
+		}
+		d, src := r.duty(name, item)
+		r.file.Duties = append(r.file.Duties, d)
+		r.file.Sources = append(r.file.Sources, src)
+	}
+}
+
+// isAbsent reports whether a list is missing, and not just under a misspelt key,
+// which is said already.
+func (r *reader) isAbsent(n *yaml.Node) bool {
+	return (isNull(n) || n.Kind == yaml.SequenceNode) && !r.misspelt
+}
+
+// nameOf returns the name in a list item and its node, "" when it has none.
+func nameOf(item *yaml.Node) (string, *yaml.Node) {
+	if v := child(item, "name"); v != nil && v.Kind == yaml.ScalarNode && !isNull(v) {
+		return oneLine(v.Value), v
+	}
+	return "", item
+}
+
+func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
+	s := scope{duty: name, where: fmt.Sprintf("duty %q", name)}
+	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "points", "file", "phases")
+	d := &duty.Duty{Name: name}
+	if _, ok := f["name"]; !ok {
+		r.bad(s, n, "name", "is missing")
+	}
+	r.text(s, f, "name")
+	r.text(s, f, "note")
+	if v, ok := r.optional(s, f, "hours", units.Time); ok {
+		if d.Hours = v.SI; v.SI < 0 || v.SI > 366*units.Day {
+			r.bad(s, f["hours"].value, "hours", "is %s; a year has 0 h to 8784 h", v.Text)
+		}
+	}
+	d.Repeats = r.flag(s, f, "repeats", true)
+	before := len(r.found)
+	src, at := r.points(s, d, f, n)
+	if step, ok := r.optional(s, f, "step", units.Time); !ok {
+		d.Step = defaultStep(d.Cycle())
+	} else if d.Step = step.SI; step.SI < 0 {
+		r.bad(s, f["step"].value, "step", "is %s, must not be below 0; 0 s means the rows only", step.Text)
+	}
+	for _, e := range r.entries(s, f["phases"].value, "phases") {
+		if v, ok := r.value(s.in("phases"), e.value, e.key, units.Time); ok {
+			d.Phases = append(d.Phases, duty.Phase{Name: e.key, From: v.SI})
+		}
+	}
+	if len(r.found) == before { // else it would be about numbers that could not be read
+		for _, p := range d.Check() {
+			r.book(s, at[p.Track], p.Track, p.Error())
+		}
+	}
+	return d, src
+}
+
+// defaultStep returns a thousandth of the cycle [s], rounded to 1, 2 or 5 (by
+// ratio), at most 10 ms; 0 for a cycle of no length.
+func defaultStep(cycle float64) float64 {
+	x := cycle / 1000
+	if !(x > 0) || math.IsInf(x, 0) {
+		return 0
+	}
+	exp := math.Floor(math.Log10(x))
+	m := x / math.Pow(10, exp) // 1..10
+	round := 10.0
+	switch {
+	case m < math.Sqrt(2):
+		round = 1
+	case m < math.Sqrt(10):
+		round = 2
+	case m < math.Sqrt(50):
+		round = 5
+	}
+	return math.Min(0.01, round*math.Pow(10, exp))
+}
+
+// points reads the rows, typed or from a recording. It returns where each track
+// stands, by its name; "" is for the duty as a whole.
+func (r *reader) points(s scope, d *duty.Duty, f map[string]entry, n *yaml.Node) (Source, map[string]*yaml.Node) {
+	pts, typed := f["points"]
+	file, recorded := f["file"]
+	switch {
+	case typed && recorded:
+		r.bad(s, file.at, "file", "points and file are both given; keep one")
+	case typed:
+		return Source{}, r.typed(s, d, pts)
+	case recorded:
+		return r.recorded(s, d, file.value), map[string]*yaml.Node{"": file.value}
+	default:
+		r.bad(s, n, "points", "are missing; write points: {t: [0 s, ...], ...} or file: name.csv")
+	}
+	return Source{}, nil
+}
+
+func (r *reader) typed(s scope, d *duty.Duty, pts entry) map[string]*yaml.Node {
+	at := map[string]*yaml.Node{"": pts.at}
+	in := s.in("points")
+	hasTime := false
+	for _, e := range r.entries(s, pts.value, "points") {
+		name, unit, ok := recording.SplitHead(e.key)
+		if !ok {
+			r.bad(in, e.at, e.key, "write the name and its unit between brackets, as in %q", "ram.speed [m/s]")
+			continue
+		}
+		if _, twice := at[name]; twice {
+			r.bad(in, e.at, e.key, "%s stands here twice; keep one", name)
+			continue
+		}
+		at[name] = e.value
+		hasTime = hasTime || name == "t"
+		dim, ok := r.column(in, d, e.at, name)
+		if !ok {
+			continue
+		}
+		r.keep(d, name, r.list(in, e, unit, dim))
+	}
+	if !hasTime {
+		r.bad(in, pts.at, "t", "is missing; give the time stamps, as in t: [0 s, 2 s]")
+	}
+	return at
+}
+
+// list reads the values of one key of points, in SI.
+func (r *reader) list(s scope, e entry, unit string, d units.Dim) []float64 {
+	out := []float64{}
+	u, err := headUnit(unit, d)
+	if err != nil {
+		r.bad(s, e.at, e.key, "%v", err)
+		return out
+	}
+	for i, item := range r.items(s, e.value, e.key, "[0 s, 2 s]") {
+		key := fmt.Sprintf("%s, value %d", e.key, i+1)
+		t, ok := r.scalar(s, item, key, "a "+d.Name())
+		if !ok {
+			out = append(out, 0)
+			continue
+		}
+		x, err := pointIn(t, unit, u, d)
+		if err != nil {
+			r.bad(s, item, key, "%v", err)
+		}
+		out = append(out, x)
+	}
+	return out
+}
+
+// pointIn reads one value of a track, whose key may name the unit of bare numbers.
+func pointIn(text, unit string, u units.Unit, d units.Dim) (float64, error) {
+	if unit != "" {
+		return boundIn(text, u, d)
+	}
+	x, _, err := units.Parse(text, d)
+	return x, err
+}
+
+// headUnit reads the unit in the head of a track, which may have none.
+func headUnit(unit string, d units.Dim) (units.Unit, error) {
+	if u, ok := units.Find(unit, d); ok || unit == "" {
+		return u, nil
+	}
+	return units.ParseUnit(unit, d)
+}
+
+// keep puts a column where it belongs; SI.
+func (r *reader) keep(d *duty.Duty, name string, values []float64) {
+	if name == "t" {
+		d.Time = values
+		return
+	}
+	of, what, _ := strings.Cut(name, ".")
+	w, _ := duty.WhatNamed(what)
+	d.Tracks = append(d.Tracks, duty.Track{Of: of, What: w, Values: values})
+}
+
+var trackWords = []string{duty.Speed.String(), duty.Position.String(), duty.Load.String(), duty.Command.String()}
+
+// column finds the quantity that a column of a duty holds.
+func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units.Dim, bool) {
+	if name == "t" {
+		return units.Time, true
+	}
+	of, what, dotted := strings.Cut(name, ".")
+	w, known := duty.WhatNamed(what)
+	if !dotted || !known {
+		r.bad(s, n, name, "is not a track; write t, or an axis and one of %s, as in %q", strings.Join(trackWords, ", "), "ram.speed")
+		return 0, false
+	}
+	for _, a := range r.file.Axes {
+		if a.Name == of {
+			return trackDim(a.Kind, w), true
+		}
+	}
+	switch {
+	case r.axes[of]: // its kind was faulty, said already
+	case r.blocks[of] && w == duty.Command:
+		return units.Ratio, true
+	case r.blocks[of]:
+		r.bad(s, n, name, "%s is a block; a block has a command only, %s is for an axis", of, what)
+	default:
+		r.bad(s, n, name, "there is no axis or block %q%s", of, guess(of, r.axisNamesKnown()))
+	}
+	return 0, false
+}
+
+func trackDim(k duty.AxisKind, w duty.What) units.Dim {
+	rotary := k == duty.Rotary
+	switch {
+	case w == duty.Command:
+		return units.Ratio
+	case w == duty.Speed && rotary:
+		return units.AngularSpeed
+	case w == duty.Speed:
+		return units.Velocity
+	case w == duty.Position && rotary:
+		return units.Angle
+	case w == duty.Position:
+		return units.Length
+	case rotary:
+		return units.Torque
+	}
+	return units.Force
+}
+
+func (r *reader) axisNamesKnown() []string {
+	var out []string
+	for _, a := range r.file.Axes {
+		out = append(out, a.Name)
+	}
+	return out
+}
+
+// recorded reads the rows from a file beside the audit file.
+func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node) Source {
+	name, ok := r.scalar(s, n, "file", "the name of a CSV file")
+	if !ok {
+		return Source{}
+	}
+	if strings.Contains(name, `\`) || !filepath.IsLocal(filepath.FromSlash(name)) {
+		r.bad(s, n, "file", "%q must lie beside the audit file or in a folder below it; write folder/name.csv", name)
+		return Source{}
+	}
+	table := r.table(s, n, name)
+	if table == nil {
+		return Source{}
+	}
+	if table.Column("t") == nil {
+		r.bad(s, n, "file", "%s has no column t; name the time stamps %q in its head", name, "t [s]")
+	}
+	in := s
+	in.where = fmt.Sprintf("%s, %s", s.where, name)
+	for _, c := range table.Columns {
+		dim, ok := r.column(in, d, n, c.Name)
+		if !ok {
+			continue
+		}
+		u, ok := units.Find(c.Unit, dim)
+		if !ok {
+			_, err := units.ParseUnit(c.Unit, dim)
+			r.bad(in, n, c.Name, "%v, between brackets in the head", err)
+			continue
+		}
+		si := make([]float64, len(c.Values))
+		for i, x := range c.Values {
+			si[i] = u.ToSI(x)
+		}
+		r.keep(d, c.Name, si)
+	}
+	return Source{File: name, SHA256: table.SHA256}
+}
+
+// table reads a recording, once.
+func (r *reader) table(s scope, n *yaml.Node, name string) *recording.Table {
+	f := r.file
+	if t := f.tables[name]; t != nil {
+		return t
+	}
+	if f.open == nil {
+		r.bad(s, n, "file", "%s cannot be read: the audit has no folder yet; save it first", name)
+		return nil
+	}
+	data, err := f.open(name)
+	if err != nil {
+		if pe := (*fs.PathError)(nil); errors.As(err, &pe) {
+			err = pe.Err // its path is that of this computer
+		}
+		r.bad(s, n, "file", "%s cannot be read: %v; put the recording beside the audit file", name, err)
+		return nil
+	}
+	t, faults := recording.ReadTable(name, data)
+	for _, fault := range faults {
+		r.bad(s, n, "file", "%v", fault)
+	}
+	if t != nil {
+		f.tables[name] = t
+	}
+	return t
+}

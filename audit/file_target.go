@@ -1,0 +1,184 @@
+package audit
+
+import (
+	"fmt"
+	"slices"
+	"strings"
+
+	"gopkg.in/yaml.v3"
+
+	"barlitre/circuit"
+)
+
+// textKeys are the keys that take a free text.
+var textKeys = []string{"note", "name", "customer", "author", "date", "currency"}
+
+// attributes are what may stand beside the value of a quantity.
+var attributes = []string{"origin", "low", "high", "note"}
+
+// sections are the parts of a file that Set reaches besides circuits, with their keys.
+var sections = map[string][]string{
+	"site":   {"name", "customer", "author", "date", "note", "currency"},
+	"oil":    {"grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100"},
+	"air":    {"temperature"},
+	"energy": {"price", "co2", "co2_year", "co2_basis", "credit_returned"},
+}
+
+// circuitKeys are what Set reaches of a circuit besides its blocks.
+var circuitKeys = []string{"role", "note", "pump_at_rest"}
+
+// find returns the places that a target of Set names, at least one.
+func (f *File) find(target string) ([]place, error) {
+	name, rest := "", target
+	if i := strings.LastIndex(target, "/"); i >= 0 {
+		name, rest = strings.TrimSpace(target[:i]), target[i+1:]
+	}
+	words := strings.Split(strings.TrimSpace(rest), ".")
+	if name != "" && f.Circuit(name) == nil {
+		var names []string
+		for _, c := range f.Circuits {
+			names = append(names, c.Name)
+		}
+		return nil, fmt.Errorf("%s: there is no circuit %q%s", target, name, guess(name, names))
+	}
+	if places, err := f.blockPlaces(target, name, words); len(places) > 0 || err != nil {
+		return places, err
+	}
+	if name != "" {
+		return f.circuitPlace(target, name, words)
+	}
+	return f.sectionPlace(target, words)
+}
+
+// blockPlaces finds a parameter of a block: in the circuit of that name, or with
+// "" in all that have the block. No places: there is no such block.
+func (f *File) blockPlaces(target, name string, words []string) ([]place, error) {
+	var places []place
+	var fault error
+	for i := range f.Circuits {
+		if name != "" && f.Circuits[i].Name != name {
+			continue
+		}
+		m, kind := f.blockNode(f.Circuits[i].Name, words[0])
+		if m == nil {
+			continue
+		}
+		p, err := blockPlace(target, words, m, kind)
+		if err != nil {
+			fault = err
+			continue
+		}
+		p.label = f.Circuits[i].Name + "/" + strings.Join(words, ".")
+		places = append(places, p)
+	}
+	if len(places) > 0 {
+		return places, nil
+	}
+	return nil, fault
+}
+
+func blockPlace(target string, words []string, m *yaml.Node, kind *circuit.Kind) (place, error) {
+	p := place{mapping: m, kind: kind}
+	if len(words) < 2 || len(words) > 3 {
+		return p, fmt.Errorf("%s: write block.parameter, as in RV1.crack", target)
+	}
+	p.key = words[1]
+	if p.key == "turn" || p.key == "mirror" {
+		if len(words) == 2 {
+			return p, nil
+		}
+	}
+	if kind == nil {
+		return p, fmt.Errorf("%s: the kind of block %s is not known", target, words[0])
+	}
+	param := kind.Param(p.key)
+	if param == nil {
+		var known []string
+		for _, q := range kind.Params {
+			known = append(known, q.Key)
+		}
+		return p, fmt.Errorf("%s: %s has no parameter %q%s", target, kind.Name, p.key, guess(p.key, known))
+	}
+	if len(words) == 2 {
+		return p, nil
+	}
+	return p, p.beside(target, words[2], param.Type == circuit.Number)
+}
+
+// beside makes a place that of an attribute of a quantity.
+func (p *place) beside(target, attribute string, isNumber bool) error {
+	if !isNumber || !slices.Contains(attributes, attribute) {
+		return fmt.Errorf("%s: %q is not known of %s; known of a quantity: %s", target, attribute, p.key, strings.Join(attributes, ", "))
+	}
+	if v := child(p.mapping, p.key); isNull(v) {
+		return fmt.Errorf("%s: %s is not in the file; set its value first", target, p.key)
+	}
+	p.attribute = attribute
+	p.isText = attribute == "note"
+	return nil
+}
+
+// circuitPlace finds what a circuit has besides blocks.
+func (f *File) circuitPlace(target, name string, words []string) ([]place, error) {
+	p := place{mapping: f.circuitNode(name), key: words[0], label: target, isText: words[0] == "note"}
+	switch {
+	case p.mapping == nil:
+		return nil, fmt.Errorf("%s: %w", target, errLayout)
+	case len(words) == 1 && slices.Contains(circuitKeys, words[0]):
+		return []place{p}, nil
+	case len(words) == 2 && words[0] == "retrofit_cost":
+		cost := child(p.mapping, "retrofit_cost")
+		if cost == nil || cost.Kind != yaml.MappingNode {
+			return nil, fmt.Errorf("%s: write retrofit_cost: {low: ..., likely: ..., high: ...} in the file first", target)
+		}
+		return []place{{mapping: cost, key: words[1], label: target, isText: words[1] == "note"}}, nil
+	}
+	return nil, fmt.Errorf("%s: circuit %q has no block %q; besides blocks it has %s and retrofit_cost", target, name, words[0],
+		strings.Join(circuitKeys, ", "))
+}
+
+// sectionPlace finds a key of site, oil, air or energy.
+func (f *File) sectionPlace(target string, words []string) ([]place, error) {
+	known, ok := sections[words[0]]
+	switch {
+	case !ok:
+		return nil, fmt.Errorf("%s: no circuit has a block %q", target, words[0])
+	case len(words) < 2 || len(words) > 3 || !slices.Contains(known, words[1]):
+		return nil, fmt.Errorf("%s: %s has %s", target, words[0], strings.Join(known, ", "))
+	}
+	p := place{mapping: child(f.root, words[0]), key: words[1], label: target, isText: slices.Contains(textKeys, words[1])}
+	if isNull(p.mapping) {
+		return nil, fmt.Errorf("%s: %s is not in the file; add it there first, as in %s: {%s: ...}", target, words[0], words[0], words[1])
+	}
+	if len(words) == 3 {
+		err := p.beside(target, words[2], words[0] != "site")
+		return []place{p}, err
+	}
+	return []place{p}, nil
+}
+
+// circuitNode returns the mapping of a circuit, or nil.
+func (f *File) circuitNode(name string) *yaml.Node {
+	for i := range f.Circuits {
+		if f.Circuits[i].Name == name {
+			if n := item(child(f.root, "circuits"), i); n != nil && n.Kind == yaml.MappingNode {
+				return n
+			}
+			break
+		}
+	}
+	return nil
+}
+
+// blockNode returns the mapping of a block and its kind, nil where there is none.
+func (f *File) blockNode(circuitName, id string) (*yaml.Node, *circuit.Kind) {
+	m := child(child(f.circuitNode(circuitName), "blocks"), id)
+	if m == nil || m.Kind != yaml.MappingNode {
+		return nil, nil
+	}
+	var kind *circuit.Kind
+	if k := child(m, "kind"); k != nil {
+		kind = circuit.KindNamed(k.Value)
+	}
+	return m, kind
+}

@@ -1,0 +1,152 @@
+package pen
+
+import (
+	"math"
+	"strings"
+	"sync"
+
+	"golang.org/x/image/font"
+	"golang.org/x/image/font/sfnt"
+	"golang.org/x/image/math/fixed"
+
+	"barlitre/assets"
+)
+
+// Heights above and below the baseline that a line of text takes, in em: the
+// tallest Latin letter with its accent and the deepest descender of the font.
+const (
+	Ascent  = 0.93
+	Descent = 0.24
+)
+
+// Replacement stands for whatever the font cannot show.
+const Replacement = '\uFFFD'
+
+// face is one parsed font with the advance widths met so far.
+type face struct {
+	mu      sync.Mutex
+	font    *sfnt.Font
+	buf     sfnt.Buffer
+	units   float64 // font units an em
+	advance map[rune]float64
+	index   map[rune]sfnt.GlyphIndex
+	masks   map[maskKey]mask
+}
+
+// faces holds the regular and the bold face, parsed on first use. The embedded
+// fonts are checked by the tests of assets, so a parse error is a broken build.
+var faces = [2]func() *face{
+	sync.OnceValue(func() *face { return parse(assets.FontRegular) }),
+	sync.OnceValue(func() *face { return parse(assets.FontBold) }),
+}
+
+func faceOf(bold bool) *face {
+	if bold {
+		return faces[1]()
+	}
+	return faces[0]()
+}
+
+func parse(data []byte) *face {
+	f, err := sfnt.Parse(data)
+	if err != nil {
+		panic("pen: embedded font: " + err.Error())
+	}
+	return &face{font: f, units: float64(f.UnitsPerEm()), advance: map[rune]float64{},
+		index: map[rune]sfnt.GlyphIndex{}, masks: map[maskKey]mask{}}
+}
+
+// glyph returns the index of a rune, 0 if the font lacks it. The caller holds mu.
+func (f *face) glyph(r rune) sfnt.GlyphIndex {
+	if g, ok := f.index[r]; ok {
+		return g
+	}
+	g, err := f.font.GlyphIndex(&f.buf, r)
+	if err != nil {
+		g = 0
+	}
+	f.index[r] = g
+	return g
+}
+
+// width returns the advance of a rune in em, without hinting. The caller holds mu.
+func (f *face) width(r rune) float64 {
+	if w, ok := f.advance[r]; ok {
+		return w
+	}
+	// Asked for at one pixel a font unit, the advance comes back exact.
+	a, err := f.font.GlyphAdvance(&f.buf, f.glyph(r), fixed.I(int(f.units)), font.HintingNone)
+	w := 0.0
+	if err == nil {
+		w = float64(a) / 64 / f.units
+	}
+	f.advance[r] = w
+	return w
+}
+
+// textWidth returns the width of a cleaned text in em. There is no kerning on
+// any back end, so the sum of advances is the width.
+func (f *face) textWidth(s string) float64 {
+	f.mu.Lock()
+	defer f.mu.Unlock()
+	w := 0.0
+	for _, r := range s {
+		w += f.width(r)
+	}
+	return w
+}
+
+// Clean returns s as every pen writes it, and as any text that goes straight
+// into a PDF document must be: valid UTF-8, no control characters (they become
+// spaces), and U+FFFD for what the font cannot show, which includes all runes
+// above U+FFFF; the PDF library panics on those. Invisible joiners and direction
+// marks are dropped. Never fails.
+func Clean(s string) string {
+	f := faceOf(false)
+	f.mu.Lock()
+	defer f.mu.Unlock()
+	return strings.Map(func(r rune) rune {
+		switch {
+		case r < ' ' || r >= 0x7f && r < 0xa0 || r == 0x2028 || r == 0x2029:
+			return ' '
+		case r >= 0x200b && r <= 0x200f, r >= 0x202a && r <= 0x202e, r >= 0xfe00 && r <= 0xfe0f, r == 0xfeff, r == 0xad:
+			return -1
+		case r > 0xffff || f.glyph(r) == 0:
+			return Replacement
+		}
+		return r
+	}, strings.ToValidUTF8(s, string(Replacement)))
+}
+
+// TextWidth returns the width of s at the given size in the units of size, as
+// all pens measure it. 0 for a size that is not finite.
+func TextWidth(s string, size float64, bold bool) float64 {
+	w := faceOf(bold).textWidth(Clean(s)) * size
+	if math.IsNaN(w) || math.IsInf(w, 0) {
+		return 0
+	}
+	return w
+}
+
+// Shorten returns s if it is not wider than width at this size, else as much of
+// its beginning as fits with an ellipsis, "…" alone if nothing else fits, and
+// the empty string if not even that does.
+func Shorten(s string, size float64, bold bool, width float64) string {
+	s = Clean(s)
+	if TextWidth(s, size, bold) <= width {
+		return s
+	}
+	room := width - TextWidth("…", size, bold)
+	if !(room >= 0) {
+		return ""
+	}
+	end, used := 0, 0.0
+	for i, r := range s {
+		used += TextWidth(string(r), size, bold)
+		if used > room {
+			break
+		}
+		end = i + len(string(r))
+	}
+	return strings.TrimRight(s[:end], " ,;·") + "…"
+}

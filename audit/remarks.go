@@ -1,0 +1,66 @@
+package audit
+
+import (
+	"fmt"
+	"math"
+
+	"barlitre/circuit"
+	"barlitre/machines/units"
+)
+
+// remarks are the findings that the energy balance itself gives rise to.
+func (c *CircuitRun) remarks() []circuit.Finding {
+	var out []circuit.Finding
+	for _, d := range c.Duties {
+		if d.Balance != nil {
+			out = append(out, c.dutyRemarks(d)...)
+		}
+	}
+	if c.Heat.Fault != "" {
+		out = append(out, circuit.Finding{Level: circuit.Warns, Circuit: c.Circuit.Name, Text: c.Heat.Fault})
+	}
+	return out
+}
+
+func (c *CircuitRun) dutyRemarks(d *DutyRun) []circuit.Finding {
+	var out []circuit.Finding
+	b := d.Balance
+	say := func(level circuit.Level, block string, t float64, format string, args ...any) {
+		out = append(out, circuit.Finding{Level: level, Circuit: c.Circuit.Name, Duty: d.Duty.Name, Block: block, Time: t,
+			Text: fmt.Sprintf(format, args...)})
+	}
+	if n := d.Certificate.Unbalanced; n > 0 {
+		text := fmt.Sprintf("%d of %d time steps could not be balanced, and the energies hold what was nearest", n, b.Steps)
+		var at float64
+		if u := d.Certificate.Unsolved; len(u) > 0 {
+			at = u[0].T
+			text += fmt.Sprintf("; the first at %s, where %s is left with %s", seconds(at), u[0].Where, u[0].Residual)
+		}
+		say(circuit.Warns, "", at, "%s", text)
+	}
+	if x := b.Closure(); x > ClosureLimit {
+		say(circuit.Warns, "", b.WorstGapAt, "the energy balance lacks %s of %s that came in (%s); most at %s. Trust no figure of this duty before this is explained",
+			kilojoules(math.Abs(b.Gap())), kilojoules(b.SupplyIn.Total()), units.Format(x, units.Percent, 2), seconds(b.WorstGapAt))
+	}
+	for _, l := range b.Losses {
+		if e := l.Energy.Total(); e < -1e-9*b.SupplyIn.Total() {
+			say(circuit.Warns, l.Block, 0, "%s of %s gains %s a cycle instead of losing energy: an error of the model; please report it with this file",
+				l.Kind, l.Block, kilojoules(-e))
+		}
+	}
+	if s := b.StoredEnergy().Total(); math.Abs(s) > storedShare*b.SupplyIn.Total() {
+		say(circuit.Note, "", 0, "at the end of the cycle %s more is stored than at its start, so the next cycle does not start as this one did; "+
+			"the year counts every cycle alike. Close the strokes of the duty", kilojoules(s))
+	}
+	if d.Duty.Hours <= 0 {
+		say(circuit.Note, "", 0, "duty %s has no hours a year and is left out of the year; give its hours", d.Duty.Name)
+	}
+	return out
+}
+
+// storedShare is the stored part of what a cycle draws that is worth a note (our choice).
+const storedShare = 0.005
+
+func seconds(t float64) string {
+	return units.Format(t, units.Preferred(units.Time, units.Metric), 4)
+}

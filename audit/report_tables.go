@@ -1,0 +1,182 @@
+package audit
+
+import (
+	"math"
+
+	"barlitre/circuit"
+	"barlitre/machines/units"
+)
+
+// ParameterRow is one value of a block as it went into the balance.
+type ParameterRow struct {
+	Block, Kind, Name, Symbol string
+	Value                     string // with its unit
+	Origin                    string // "measured", "default: assumed", "not stated" …
+	Low, High                 string // "" when not given
+	Note                      string
+	Default                   bool // nobody typed it
+}
+
+// parameters lists every value of a circuit, block by block, in the order of the catalog.
+func parameters(c *circuit.Circuit) []ParameterRow {
+	var out []ParameterRow
+	for i := range c.Blocks {
+		b := &c.Blocks[i]
+		k := circuit.KindNamed(b.Kind)
+		if k == nil {
+			continue
+		}
+		for j := range k.Params {
+			if row, ok := parameter(k, b, &k.Params[j]); ok {
+				out = append(out, row)
+			}
+		}
+	}
+	return out
+}
+
+func parameter(k *circuit.Kind, b *circuit.Block, p *circuit.Param) (ParameterRow, bool) {
+	row := ParameterRow{Block: b.ID, Kind: k.Title, Name: p.Title, Symbol: p.Symbol}
+	if p.Type != circuit.Number {
+		row.Value = k.WordOf(b, p.Key)
+		row.Default = b.Word(p.Key) == ""
+		row.Origin = "chosen"
+		if row.Default {
+			row.Origin = "default"
+		}
+		return row, row.Value != ""
+	}
+	v, isDefault, ok := k.Value(b, p.Key)
+	if !ok {
+		return row, false
+	}
+	row.Value, row.Default, row.Note = valueText(v, p.Dim), isDefault, v.Note
+	row.Origin = string(v.Origin)
+	if row.Origin == "" {
+		row.Origin = "not stated"
+	}
+	if isDefault {
+		row.Origin = "default: " + row.Origin
+	}
+	if !math.IsNaN(v.Low) {
+		row.Low = units.Format(v.Low, unitOf(v, p.Dim), 4)
+	}
+	if !math.IsNaN(v.High) {
+		row.High = units.Format(v.High, unitOf(v, p.Dim), 4)
+	}
+	return row, true
+}
+
+// valueText shows a value in the unit and with the digits it was typed with.
+func valueText(v circuit.Value, d units.Dim) string {
+	if v.Text != "" {
+		return v.Text
+	}
+	return units.Format(v.SI, unitOf(v, d), 5)
+}
+
+func unitOf(v circuit.Value, d units.Dim) units.Unit {
+	if v.Unit.Factor == 0 {
+		return units.Preferred(d, units.Metric)
+	}
+	return v.Unit
+}
+
+// lossTable lists where the energy of a cycle goes; the rows add up to what is drawn.
+func lossTable(p printer, b *Balance) Table {
+	t := Table{Title: "Where the energy of one cycle goes",
+		Head: []string{"", "to", "a cycle", "share of drawn", "of which while the load drives", "while holding", "while idle"}}
+	whole := b.SupplyIn.Total()
+	row := func(sum bool, name, to string, e Split) {
+		t.add(sum, name, to, p.energy(e.Total()), shareText(p, e.Total(), whole), p.energy(e.Driving), p.energy(e.Holding), p.energy(e.Idle))
+	}
+	for _, l := range b.Losses {
+		row(false, l.Block+": "+l.Kind, string(l.Sink), l.Energy)
+	}
+	row(false, "work against loads", "load", b.WorkPositive())
+	row(false, "work taken from driving loads", "", b.WorkNegative())
+	row(false, "put into store", "", b.StoredEnergy())
+	row(false, "returned to the supply", "mains", b.Returned)
+	row(true, "drawn from the supply", "", b.SupplyIn)
+	t.Note = "Rows are integrated each for itself; they miss the sum by " + units.Format(b.Closure(), units.Percent, 2) + " of what came in."
+	return t
+}
+
+// shareText writes part of whole, "n/a" when there is no whole.
+func shareText(p printer, part, whole float64) string {
+	if whole == 0 {
+		return "n/a"
+	}
+	return p.share(part / whole)
+}
+
+// yearLossTable prices every loss, so that the list is a list of what to mend.
+func (s *Solution) yearLossTable(p printer, c *CircuitRun) Table {
+	y := c.Year
+	t := Table{Title: "Where the energy of a year goes", Head: []string{"", "to", "a year", "share of drawn"}}
+	priced := known(s.Tariff.Price)
+	if priced {
+		t.Head = append(t.Head, "money a year")
+	}
+	row := func(sum bool, name, to string, e float64) {
+		cells := []string{name, to, p.kWh(e), shareText(p, e, y.Drawn.Total())}
+		if priced {
+			cells = append(cells, p.money(e*s.Tariff.Price))
+		}
+		t.add(sum, cells...)
+	}
+	for _, l := range y.Losses {
+		row(false, l.Block+": "+l.Kind, string(l.Sink), l.Energy.Total())
+	}
+	row(false, "work against loads", "load", y.WorkPositive().Total())
+	row(false, "work taken from driving loads", "", y.WorkNegative().Total())
+	row(false, "put into store", "", y.Stored.Total())
+	row(false, "returned to the supply", "mains", y.Returned.Total())
+	row(true, "drawn from the supply", "", y.Drawn.Total())
+	if priced {
+		t.Note = "Money is energy times the price of energy; a loss that is avoided may change others."
+	}
+	return t
+}
+
+// stateTable splits the year by what the machine does.
+func stateTable(p printer, y *Year) Table {
+	t := Table{Title: "What the machine does meanwhile", Head: []string{"", "time a year", "drawn a year", "mean power drawn", "share of drawn"}}
+	row := func(sum bool, name string, seconds, e float64) {
+		t.add(sum, name, p.hours(seconds), p.kWh(e), p.power(ratio(e, seconds)), shareText(p, e, y.Drawn.Total()))
+	}
+	row(false, "working: an axis moves", y.Seconds.Working, y.Drawn.Working)
+	row(false, "holding: all axes stand, one under a load", y.Seconds.Holding, y.Drawn.Holding)
+	row(false, "idle: all axes stand without load", y.Seconds.Idle, y.Drawn.Idle)
+	row(true, "all", y.Seconds.Total(), y.Drawn.Total())
+	row(false, "of which while the load drives an axis", y.Seconds.Driving, y.Drawn.Driving)
+	return t
+}
+
+// groupTable tells where a saving comes from.
+func groupTable(p printer, c *Comparison) Table {
+	t := Table{Title: "Where the saving comes from", Head: []string{"a year", c.Base.Circuit.Name, c.Proposal.Circuit.Name, "less"}}
+	for _, g := range c.Groups {
+		t.add(false, g.Name, p.kWh(g.Before), p.kWh(g.After), p.kWh(g.Before-g.After))
+	}
+	before, after := c.Base.Year.Drawn.Total(), c.Proposal.Year.Drawn.Total()
+	t.add(true, "drawn from the supply", p.kWh(before), p.kWh(after), p.kWh(before-after))
+	return t
+}
+
+// shortfallTable sets what axes lack side by side.
+func shortfallTable(p printer, c *Comparison) Table {
+	t := Table{Title: "Motion that was asked for and not delivered, a cycle",
+		Head: []string{"", c.Base.Circuit.Name, "", c.Proposal.Circuit.Name, ""}}
+	for _, x := range c.Shortfalls {
+		t.add(false, x.Duty+", axis "+x.Axis, p.seconds(x.Base.Seconds), lost(x.Base), p.seconds(x.Proposal.Seconds), lost(x.Proposal))
+	}
+	if len(c.Shortfalls) == 0 {
+		t.Note = "Both circuits deliver every motion of every duty."
+	} else {
+		t.Note = "Time slower than asked, and stroke lost in it (m; rad for an axis that turns)."
+	}
+	return t
+}
+
+func lost(s circuit.Shortfall) string { return units.Number(s.LostStroke, 3) }

@@ -1,0 +1,23 @@
+// Package balance solves box-constrained complementarity problems: find x with
+// l <= x <= h such that for every i
+//
+//	x_i = l_i and G_i(x) >= 0,  or
+//	x_i = h_i and G_i(x) <= 0,  or
+//	l_i < x_i < h_i and G_i(x) = 0.
+//
+// It knows vectors and no oil. A circuit writes each row so that it rises with
+// its own unknown; the bounds then give the physics of closed valves, stops,
+// saturation and cavitation without cases.
+//
+// Method: semismooth Newton on the min/max form of the conditions, which near a
+// solution is a primal-dual active set method; where that fails, Newton on the
+// Fischer-Burmeister function with a non-monotone line search; then
+// pseudo-transient continuation (implicit Euler on x' = −G); each from the last
+// solution and from cold starts. Which rung solved a step is reported.
+//
+// Sources: Facchinei and Pang, Finite-Dimensional Variational Inequalities and
+// Complementarity Problems, Springer 2003, ch. 8-9; Billups, Algorithms for
+// complementarity problems and generalized equations, thesis, Wisconsin 1995
+// (nesting of two bounds); Kelley and Keyes, Convergence analysis of
+// pseudo-transient continuation, SIAM J. Numer. Anal. 35 (1998).
+package balance

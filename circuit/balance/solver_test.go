@@ -1,0 +1,148 @@
+package balance
+
+import (
+	"math"
+	"testing"
+
+	"gonum.org/v1/gonum/mat"
+)
+
+// problem adapts a function; the Jacobian is by central differences, so that
+// the tests do not hang on hand-made derivatives.
+type problem struct {
+	n int
+	f func(x, g []float64)
+}
+
+func (p problem) Eval(x, g, jac []float64) {
+	p.f(x, g)
+	hi, lo := make([]float64, p.n), make([]float64, p.n)
+	for j := 0; j < p.n; j++ {
+		h := 1e-6 * (1 + math.Abs(x[j]))
+		old := x[j]
+		x[j] = old + h
+		p.f(x, hi)
+		x[j] = old - h
+		p.f(x, lo)
+		x[j] = old
+		for i := 0; i < p.n; i++ {
+			jac[i*p.n+j] = (hi[i] - lo[i]) / (2 * h)
+		}
+	}
+}
+
+func inf() float64 { return math.Inf(1) }
+
+// Published problems with known solutions.
+func TestKnownProblems(t *testing.T) {
+	cases := []struct {
+		name   string
+		source string
+		n      int
+		lo, hi []float64
+		f      func(x, g []float64)
+		start  []float64
+		want   []float64
+		tol    float64
+	}{
+		{"Powell badly scaled", "Moré, Garbow, Hillstrom, ACM TOMS 7 (1981), problem 3", 2,
+			[]float64{-inf(), -inf()}, []float64{inf(), inf()},
+			func(x, g []float64) {
+				g[1] = 1e4*x[0]*x[1] - 1
+				g[0] = math.Exp(-x[0]) + math.Exp(-x[1]) - 1.0001
+			}, []float64{0, 1}, []float64{1.098159e-5, 9.106146}, 1e-6},
+		{"Josephy", "Josephy 1979, as in Dirkse and Ferris, MCPLIB (1995): x = (√6/2, 0, 0, 1/2) is a solution", 4,
+			[]float64{0, 0, 0, 0}, []float64{inf(), inf(), inf(), inf()},
+			kojima, []float64{1.2, 0.1, 0.1, 0.4}, []float64{math.Sqrt(6) / 2, 0, 0, 0.5}, 1e-8},
+		{"Murty linear", "Murty 1988, Linear Complementarity: x = (0, 0, 0, 1) for upper triangular M with q = −1", 4,
+			[]float64{0, 0, 0, 0}, []float64{inf(), inf(), inf(), inf()},
+			func(x, g []float64) {
+				for i := range g {
+					g[i] = x[i] - 1
+					for j := i + 1; j < 4; j++ {
+						g[i] += 2 * x[j]
+					}
+				}
+			}, []float64{5, 5, 5, 5}, []float64{0, 0, 0, 1}, 1e-10},
+		{"both bounds", "x − 2 on [0, 1]: at the upper bound; x + 2: at the lower; x − 0.5: inside (by hand)", 3,
+			[]float64{0, 0, 0}, []float64{1, 1, 1},
+			func(x, g []float64) { g[0], g[1], g[2] = x[0]-2, x[1]+2, x[2]-0.5 },
+			[]float64{0.5, 0.5, 0}, []float64{1, 0, 0.5}, 1e-12},
+	}
+	for _, c := range cases {
+		s := NewSolver(c.n)
+		copy(s.Lo, c.lo)
+		copy(s.Hi, c.hi)
+		x := append([]float64(nil), c.start...)
+		res := s.Solve(problem{c.n, c.f}, x, 3, func(level int, x []float64) {
+			for i := range x {
+				x[i] = c.start[i] * (1 + 0.3*float64(level))
+			}
+		})
+		if !res.Solved() {
+			t.Errorf("%s: not solved, norm %g", c.name, res.Norm)
+			continue
+		}
+		for i := range x {
+			if math.Abs(x[i]-c.want[i]) > c.tol*(1+math.Abs(c.want[i])) {
+				t.Errorf("%s: x[%d] = %.9g, want %.9g (%s)", c.name, i, x[i], c.want[i], c.source)
+			}
+		}
+	}
+}
+
+// kojima is the Kojima-Shindo problem; (√6/2, 0, 0, 1/2) and (1, 0, 3, 0) solve it.
+func kojima(x, g []float64) {
+	g[0] = 3*x[0]*x[0] + 2*x[0]*x[1] + 2*x[1]*x[1] + x[2] + 3*x[3] - 6
+	g[1] = 2*x[0]*x[0] + x[0] + x[1]*x[1] + 10*x[2] + 2*x[3] - 2
+	g[2] = 3*x[0]*x[0] + x[0]*x[1] + 2*x[1]*x[1] + 2*x[2] + 9*x[3] - 9
+	g[3] = x[0]*x[0] + 3*x[1]*x[1] + 2*x[2] + 3*x[3] - 3
+}
+
+func TestLUAgainstLibrary(t *testing.T) {
+	for n := 1; n <= 24; n++ {
+		f := newLU(n)
+		a := mat.NewDense(n, n, nil)
+		b := make([]float64, n)
+		state := uint64(n)*2654435761 + 1
+		next := func() float64 {
+			state = state*6364136223846793005 + 1442695040888963407
+			return float64(int64(state>>11))/float64(1<<52) - 1
+		}
+		for i := 0; i < n; i++ {
+			b[i] = next()
+			for j := 0; j < n; j++ {
+				v := next() * math.Pow(10, 6*next())
+				a.Set(i, j, v)
+				f.a[i*n+j] = v
+			}
+		}
+		var want mat.VecDense
+		if err := want.SolveVec(a, mat.NewVecDense(n, append([]float64(nil), b...))); err != nil {
+			continue // too ill-conditioned for a comparison
+		}
+		x := make([]float64, n)
+		if f.factor() == 0 {
+			t.Fatalf("n = %d: singular", n)
+		}
+		f.solve(b, x)
+		for i := range x {
+			if d := math.Abs(x[i] - want.AtVec(i)); d > 1e-6*(1e-6+math.Abs(want.AtVec(i))) && d > 1e-9 {
+				t.Errorf("n = %d: x[%d] = %g, gonum %g", n, i, x[i], want.AtVec(i))
+			}
+		}
+	}
+}
+
+// A problem without a solution must say so and name the row.
+func TestNoSolution(t *testing.T) {
+	s := NewSolver(2)
+	x := []float64{0, 0}
+	res := s.Solve(problem{2, func(x, g []float64) { g[0], g[1] = x[0]-1, x[1]*x[1]+1 }}, x, 2, func(int, []float64) {})
+	if res.Solved() {
+		t.Fatalf("solved x² + 1 = 0: x = %v", x)
+	}
+	if res.Worst != 1 || res.Norm < 0.5 {
+		t.Errorf("worst row %d with norm %g, want row 1", res.Worst, res.Norm)
+	}
+}

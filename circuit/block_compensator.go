@@ -1,0 +1,110 @@
+package circuit
+
+import (
+	"math"
+
+	"barlitre/machines/units"
+)
+
+// compensatorKind is a pressure compensator before a metering edge.
+var compensatorKind = &Kind{
+	Name: kindCompensator, Title: "Pressure compensator", Group: "valves",
+	Text: "Stands before a metering edge and keeps the drop from A to the load signal at LS at its setting, by throttling what the supply has too much. It does not pass oil back.",
+	Ports: []Port{
+		{Name: "P", Type: Oil, Text: "supply"},
+		{Name: "A", Type: Oil, Text: "to the metering edge"},
+		{Name: "LS", Type: Pilot, Text: "load pressure of the section"},
+	},
+	Params: []Param{
+		{Key: "drop", Title: "Drop held", Symbol: "Δpc", Dim: units.Pressure, Default: "8 bar", Origin: Assumed, Source: "common practice 5 to 12 bar", Above: true, Max: 100e5, Text: "from A to the load signal"},
+		{Key: "nominal_flow", Title: "Nominal flow", Symbol: "qN", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "wide open, at the nominal drop"},
+		{Key: "nominal_drop", Title: "Nominal drop", Symbol: "ΔpN", Dim: units.Pressure, Default: "2 bar", Origin: Assumed, Source: "common practice", Max: 100e5, Text: "wide open, at the nominal flow; 0 bar makes it lossless"},
+	},
+	Losses:    []LossKind{{"compensator", ToOil, "P = Δp·q"}},
+	Equations: []Equation{{"pP − pA = ΔpN·(q/qN)² + z, z >= 0; pA − pLS = Δpc while z > 0; q >= 0", "ideal pressure compensator with load check, complementarity"}},
+	Symbol:    func(*Block) string { return "compensator" },
+	build: func(k *compiler, b *Block) model {
+		m := &compensatorModel{P: k.node(b, "P"), A: k.node(b, "A"), ls: k.node(b, "LS"), q: k.unknown(otherRow, b.ID), z: k.unknown(otherRow, b.ID+" throttling"),
+			drop: k.param(b, "drop"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"),
+			qP: k.port(b, "P"), qA: k.port(b, "A"), loss: k.channel(Loss, b, "compensator")}
+		k.port(b, "LS")
+		return m
+	},
+}
+
+type compensatorModel struct {
+	P, A, ls, q, z slot
+	drop, qN, dN   int
+	qP, qA, loss   int
+	held           float64
+	t              throat
+}
+
+func (m *compensatorModel) clone() model { c := *m; return &c }
+
+func (m *compensatorModel) bind(b *binding) {
+	m.held = b.p[m.drop] / b.scales.p
+	m.t = throatOf(b.p[m.qN]/b.scales.q, b.p[m.dN]/b.scales.p)
+	b.bound.Lo[m.q] = 0
+	b.bound.Lo[m.z], b.bound.Hi[m.z] = 0, throttleMax
+	b.bound.Long[m.z] = true
+}
+
+func (m *compensatorModel) begin(*step) {}
+
+func (m *compensatorModel) eval(e *eval) {
+	q := e.branch(m.P, m.A, m.q)
+	r, dr := m.t.at(q)
+	e.drop(m.P, m.A, m.q, r+e.val(m.z), dr)
+	e.d(m.q, m.z, 1)
+	// More throttling lowers pA: the row rises with z.
+	e.add(m.z, m.held-(e.val(m.A)-e.val(m.ls)))
+	e.d(m.z, m.A, -1)
+	e.d(m.z, m.ls, 1)
+}
+
+func (m *compensatorModel) book(k *booking) { k.through(m.P, m.A, k.val(m.q), m.qP, m.qA, m.loss) }
+
+func (m *compensatorModel) cold(s *step, level int, x []float64) { x[m.q], x[m.z] = 0.05, 0.1 }
+
+// throttleMax bounds the drop that a throttling control may make: 1000 times the
+// pressure scale. Without a bound there is no solution where leakage alone moves
+// an actuator faster than asked.
+const throttleMax = 1e3
+
+// shuttleKind selects the higher of two pilot signals.
+var shuttleKind = &Kind{
+	Name: kindShuttle, Title: "Shuttle valve (signal)", Group: "valves",
+	Text: "Passes the higher of the pilot pressures at X and Y to A.",
+	Ports: []Port{
+		{Name: "X", Type: Pilot, Text: "one signal"},
+		{Name: "Y", Type: Pilot, Text: "other signal"},
+		{Name: "A", Type: Pilot, Source: true, Text: "the higher one"},
+	},
+	Equations: []Equation{{"pA = max(pX, pY)", "ideal shuttle valve"}},
+	Symbol:    func(*Block) string { return "shuttle" },
+	build: func(k *compiler, b *Block) model {
+		m := &shuttleModel{x: k.node(b, "X"), y: k.node(b, "Y"), a: k.node(b, "A")}
+		for _, p := range []string{"X", "Y", "A"} {
+			k.port(b, p)
+		}
+		return m
+	},
+}
+
+type shuttleModel struct{ x, y, a slot }
+
+func (m *shuttleModel) clone() model  { c := *m; return &c }
+func (m *shuttleModel) bind(*binding) {}
+func (m *shuttleModel) begin(*step)   {}
+func (m *shuttleModel) book(*booking) {}
+
+func (m *shuttleModel) eval(e *eval) {
+	from := m.x
+	if e.val(m.y) > e.val(m.x) {
+		from = m.y
+	}
+	e.add(m.a, e.val(m.a)-math.Max(e.val(m.x), e.val(m.y)))
+	e.d(m.a, m.a, 1)
+	e.d(m.a, from, -1)
+}

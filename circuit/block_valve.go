@@ -1,0 +1,357 @@
+package circuit
+
+import (
+	"math"
+
+	"barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+// valveKind is a 4/3 directional or proportional valve.
+var valveKind = &Kind{
+	Name: kindValve, Title: "Directional valve 4/3", Group: "valves",
+	Text: "Four edges, any centre. With `follows` it throttles so that the axis moves as the duty says (the same opening on both edges); with `directs` it only chooses the direction, fully open; otherwise a track of the duty commands it.",
+	Ports: []Port{
+		{Name: "P", Type: Oil, Text: "supply"},
+		{Name: "A", Type: Oil, Text: "to the actuator"},
+		{Name: "B", Type: Oil, Text: "to the actuator"},
+		{Name: "T", Type: Oil, Text: "return"},
+		{Name: "LS", Type: Pilot, Optional: true, Source: true, Text: "pressure of the port that is fed; zero in the centre"},
+	},
+	Params: []Param{
+		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its opening is found from the motion of this axis"},
+		{Key: "directs", Title: "Directs axis", Type: AxisRef, Text: "fully open in the direction of this axis"},
+		{Key: "centre", Title: "Centre", Type: Choice, Default: "closed", Choices: []string{"closed", "open", "tandem", "float"}, Text: "closed; open: all joined; tandem: P to T, A and B closed; float: A and B to T, P closed"},
+		{Key: "nominal_flow", Title: "Nominal flow per edge", Symbol: "qN", Dim: units.Flow, Need: true, Above: true, Max: 10, Text: "of each edge, fully open, at the nominal drop"},
+		{Key: "nominal_drop", Title: "Nominal drop per edge", Symbol: "ΔpN", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "proportional valves: 5 bar an edge, common practice", Above: true, Max: 200e5, Text: "of one edge at its nominal flow"},
+		{Key: "flow_PA", Title: "Nominal flow P to A", Symbol: "qPA", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
+		{Key: "flow_PB", Title: "Nominal flow P to B", Symbol: "qPB", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
+		{Key: "flow_AT", Title: "Nominal flow A to T", Symbol: "qAT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
+		{Key: "flow_BT", Title: "Nominal flow B to T", Symbol: "qBT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
+		{Key: "flow_centre", Title: "Nominal flow in the centre", Symbol: "qC", Dim: units.Flow, Above: true, Max: 10, Text: "of each path that is open in the centre; default: as the edges"},
+		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
+	},
+	Losses: []LossKind{
+		{"metering P-A", ToOil, "P = (pP − pA)·q"}, {"metering P-B", ToOil, "P = (pP − pB)·q"},
+		{"metering A-T", ToOil, "P = (pA − pT)·q"}, {"metering B-T", ToOil, "P = (pB − pT)·q"},
+		{"unloaded circulation", ToOil, "P = (pP − pT)·q in the centre"},
+	},
+	Equations: []Equation{{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open", "orifice law from the nominal point of the edge"}},
+	Rating:    "rating",
+	Symbol: func(b *Block) string {
+		s := "dcv_4_3_"
+		if c := b.Word("centre"); c != "" {
+			s += c
+		} else {
+			s += "closed"
+		}
+		if b.Word("directs") == "" {
+			s += "_prop"
+		}
+		return s
+	},
+	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
+		if follows(b) != "" && b.Word("directs") != "" {
+			bad(Stops, "directs", "it follows an axis and directs one; keep one of `follows` and `directs`")
+		}
+	},
+	build: buildValve,
+}
+
+// The four edges and their ports.
+const (
+	edgePA = iota
+	edgePB
+	edgeAT
+	edgeBT
+	edges
+)
+
+// valveModel keeps a flow unknown for each of two branches that can be open at
+// once, and two more where the centre opens all four edges.
+type valveModel struct {
+	id         string
+	P, A, B, T slot
+	ls         slot
+	axis       int
+	vel        slot
+	hold       string
+	given      duty.Given
+	polarity   polarity
+	directs    bool
+	tracks     bool // it is the control that is found
+	centre     string
+	q          [4]slot
+	y          slot // throttling: drop at the wanted flow, beyond that of the open edge
+	qN, dN, qC int
+	per        [edges]int
+	sig        [4]int // port flows P A B T
+	sigU       int
+	loss       [edges]int
+	around     int
+
+	open   [edges]throat
+	mid    throat
+	branch [4]branch // of the step
+	ref    float64   // smallest drop of the open edges at the wanted flow
+	dir    float64
+	wanted float64
+	u      float64 // commanded opening
+	now    bool    // throttling is found in this step
+	was    float64
+}
+
+type branch struct {
+	a, b slot
+	t    throat
+	edge int // −1: centre P to T
+	on   bool
+}
+
+func buildValve(k *compiler, b *Block) model {
+	m := &valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, y: noSlot,
+		centre: KindNamed(b.Kind).WordOf(b, "centre"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), qC: k.param(b, "flow_centre"),
+		per:  [edges]int{k.param(b, "flow_PA"), k.param(b, "flow_PB"), k.param(b, "flow_AT"), k.param(b, "flow_BT")},
+		sig:  [4]int{k.port(b, "P"), k.port(b, "A"), k.port(b, "B"), k.port(b, "T")},
+		sigU: k.signal(b, "u", "opening", units.Ratio), around: k.channel(Loss, b, "unloaded circulation")}
+	for i, name := range []string{"metering P-A", "metering P-B", "metering A-T", "metering B-T"} {
+		m.loss[i] = k.channel(Loss, b, name)
+	}
+	if k.joined(b, "LS") {
+		m.ls = k.node(b, "LS")
+		k.port(b, "LS")
+	}
+	n := 2
+	if m.centre == "open" {
+		n = 4
+	}
+	for i := range m.q {
+		m.q[i] = noSlot
+		if i < n {
+			m.q[i] = k.unknown(otherRow, b.ID)
+		}
+	}
+	axis := follows(b)
+	if d := b.Word("directs"); d != "" {
+		axis, m.directs = d, true
+	}
+	if axis != "" {
+		m.axis = k.axisOf[axis]
+		mv := k.movers[m.axis]
+		m.vel, m.hold, m.given = mv.speed, mv.hold, mv.given
+		m.polarity = k.polarityOf(PortRef{b.ID, "A"}, m.axis)
+		m.tracks = !m.directs && m.given == duty.MotionLoad
+	}
+	if m.tracks {
+		m.y = k.unknown(otherRow, b.ID+" opening")
+	}
+	return m
+}
+
+func (m *valveModel) clone() model { c := *m; return &c }
+
+func (m *valveModel) bind(b *binding) {
+	qN, dp := b.p[m.qN], b.p[m.dN]/b.scales.p
+	for i := range m.open {
+		m.open[i] = throatOf(b.get(m.per[i], qN)/b.scales.q, dp)
+	}
+	m.mid = throatOf(b.get(m.qC, qN)/b.scales.q, dp)
+	if m.y >= 0 {
+		b.bound.Lo[m.y], b.bound.Hi[m.y] = 0, throttleMax
+		b.bound.Weight[m.y] = 1000
+		b.bound.Long[m.y] = true
+	}
+	m.was = math.NaN()
+}
+
+// begin opens the edges that the direction asks for.
+func (m *valveModel) begin(s *step) {
+	m.position(s)
+	m.branch = [4]branch{}
+	pick := func(i int, a, b slot, t throat, edge int) { m.branch[i] = branch{a, b, t, edge, true} }
+	switch {
+	case m.dir > 0:
+		pick(0, m.P, m.A, m.open[edgePA], edgePA)
+		pick(1, m.B, m.T, m.open[edgeBT], edgeBT)
+	case m.dir < 0:
+		pick(0, m.P, m.B, m.open[edgePB], edgePB)
+		pick(1, m.A, m.T, m.open[edgeAT], edgeAT)
+	case m.centre == "tandem":
+		pick(0, m.P, m.T, m.mid, -1)
+	case m.centre == "float":
+		pick(0, m.A, m.T, m.mid, edgeAT)
+		pick(1, m.B, m.T, m.mid, edgeBT)
+	case m.centre == "open":
+		pick(0, m.P, m.A, m.mid, edgePA)
+		pick(1, m.P, m.B, m.mid, edgePB)
+		pick(2, m.A, m.T, m.mid, edgeAT)
+		pick(3, m.B, m.T, m.mid, edgeBT)
+	}
+	for i, q := range m.q {
+		if q < 0 {
+			continue
+		}
+		if m.branch[i].on {
+			s.bounds(q, math.Inf(-1), math.Inf(1))
+		} else {
+			s.set(q, 0)
+		}
+	}
+	if m.y >= 0 {
+		if m.now {
+			s.bounds(m.y, 0, throttleMax)
+			m.ref = math.Inf(1)
+			for _, br := range m.branch[:2] {
+				r, _ := br.t.at(math.Abs(m.wanted))
+				m.ref = math.Min(m.ref, r)
+			}
+			m.ref = math.Max(m.ref, 1e-12)
+		} else {
+			s.set(m.y, 0)
+		}
+	}
+	if m.dir != m.was { // another position: start its edges anew
+		m.start(s, s.x)
+		m.was = m.dir
+	}
+}
+
+// position finds direction and opening from the demand or the command.
+func (m *valveModel) position(s *step) {
+	m.dir, m.u, m.now = 0, 1, false
+	if m.axis < 0 {
+		if tr := s.commands[m.id]; tr != nil && math.Abs(tr[s.k]) >= duty.StandstillShare {
+			m.dir, m.u = sign(tr[s.k]), math.Abs(tr[s.k])
+		}
+		return
+	}
+	a := &s.axes[m.axis]
+	if a.standing {
+		return
+	}
+	want := a.demand
+	if m.given != duty.MotionLoad {
+		want = a.command
+		if !m.directs {
+			m.u = math.Max(math.Abs(want), duty.StandstillShare)
+		}
+	}
+	m.dir = sign(want) * m.polarity.fixed()
+	m.now, m.wanted = m.tracks, a.scaledDemand
+}
+
+// start gives the flows and the throttling of a new position a first value.
+func (m *valveModel) start(s *step, x []float64) {
+	for i, q := range m.q {
+		if q >= 0 && m.branch[i].on {
+			x[q] = math.Min(0.05, math.Abs(m.wanted)+1e-3)
+			if m.now {
+				x[q] = math.Abs(m.wanted)
+			}
+		}
+	}
+	if m.now {
+		x[m.y] = 0.3
+	}
+}
+
+func (m *valveModel) cold(s *step, level int, x []float64) { m.start(s, x) }
+
+// factor is by how much the opening raises the drop of an edge over its fully
+// open one: 1/u².
+func (m *valveModel) factor(e *eval) float64 {
+	if m.now {
+		return 1 + e.val(m.y)/m.ref
+	}
+	return 1 / (m.u * m.u)
+}
+
+func (m *valveModel) eval(e *eval) {
+	f := m.factor(e)
+	for i, br := range m.branch {
+		q := m.q[i]
+		if q < 0 {
+			continue
+		}
+		if !br.on {
+			e.d(q, q, 1)
+			e.add(q, e.val(q))
+			continue
+		}
+		v := e.branch(br.a, br.b, q)
+		r, dr := br.t.at(v)
+		if m.dir == 0 {
+			e.drop(br.a, br.b, q, r, dr)
+			continue
+		}
+		e.drop(br.a, br.b, q, r*f, dr*f)
+		if m.now {
+			e.d(q, m.y, r/m.ref)
+		}
+	}
+	if m.y >= 0 {
+		if m.now { // more throttling, less speed
+			sg := sign(m.wanted)
+			e.add(m.y, -sg*(e.val(m.vel)-m.wanted))
+			e.d(m.y, m.vel, -sg)
+		} else {
+			e.add(m.y, e.val(m.y))
+			e.d(m.y, m.y, 1)
+		}
+	}
+	if m.ls >= 0 {
+		load := m.loadPort()
+		e.add(m.ls, e.val(m.ls))
+		e.d(m.ls, m.ls, 1)
+		if load != noSlot {
+			e.add(m.ls, -e.val(load))
+			e.d(m.ls, load, -1)
+		}
+	}
+}
+
+// loadPort is the port that is fed.
+func (m *valveModel) loadPort() slot {
+	switch {
+	case m.dir > 0:
+		return m.A
+	case m.dir < 0:
+		return m.B
+	}
+	return noSlot
+}
+
+func (m *valveModel) book(k *booking) {
+	var q [4]float64 // into P A B T
+	for i, br := range m.branch {
+		if m.q[i] < 0 || !br.on {
+			continue
+		}
+		v := k.m3s(k.val(m.q[i]))
+		channel := m.around
+		switch br.edge {
+		case edgePA:
+			q[0], q[1] = q[0]+v, q[1]-v
+		case edgePB:
+			q[0], q[2] = q[0]+v, q[2]-v
+		case edgeAT:
+			q[1], q[3] = q[1]+v, q[3]-v
+		case edgeBT:
+			q[2], q[3] = q[2]+v, q[3]-v
+		default:
+			q[0], q[3] = q[0]+v, q[3]-v
+		}
+		if br.edge >= 0 {
+			channel = m.loss[br.edge]
+		}
+		k.pow[channel] += v * (k.pa(br.a) - k.pa(br.b))
+	}
+	for i, s := range m.sig {
+		k.put(s, q[i])
+	}
+	u := 0.0
+	if m.dir != 0 {
+		u = m.dir / math.Sqrt(m.factor(&k.eval))
+	}
+	k.put(m.sigU, u)
+}

@@ -1,0 +1,250 @@
+package circuit
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"barlitre/machines/units"
+)
+
+// PortType says what passes a port.
+type PortType string
+
+// The types of port. Ports of one line must be of one type; a pilot port may
+// also sit on an oil line, whose pressure it reads.
+const (
+	Oil      PortType = "oil"
+	Pilot    PortType = "pilot" // pressure, no flow
+	Shaft    PortType = "shaft"
+	Electric PortType = "electric" // power only
+)
+
+// Port is a connection of a kind of block.
+type Port struct {
+	Name     string
+	Type     PortType
+	Optional bool   // may stay unconnected
+	Source   bool   // of a pilot port: it gives a pressure instead of reading one
+	Text     string // what it is
+}
+
+// ParamType says what a parameter takes.
+type ParamType int
+
+// The types of parameter.
+const (
+	Number  ParamType = iota // a quantity with a unit
+	Choice                   // one of Choices
+	AxisRef                  // the name of an axis
+)
+
+// Param is a parameter of a kind of block.
+type Param struct {
+	Key     string // as in files
+	Title   string // as on screen and paper
+	Symbol  string // in equations
+	Type    ParamType
+	Dim     units.Dim
+	Default string // as written in a file; "" = none
+	Origin  Origin // of the default
+	Source  string // why this default
+	Min     float64
+	Max     float64 // SI; the range includes its ends
+	Above   bool    // the range excludes Min
+	Need    bool    // must be given
+	Choices []string
+	Text    string
+
+	defaultValue Value
+}
+
+// Sink says where the energy of a loss goes.
+type Sink string
+
+// The sinks.
+const (
+	ToOil      Sink = "oil"
+	ToAir      Sink = "air"
+	ToResistor Sink = "resistor"
+	ToLoad     Sink = "load" // a brake or the machine itself
+)
+
+// LossKind is one way in which a kind of block loses energy.
+type LossKind struct {
+	Name string
+	Sink Sink
+	Text string // the law, in words and symbols
+}
+
+// Equation is one law of a block, with where it comes from.
+type Equation struct{ Text, Source string }
+
+// Kind is an entry of the catalog: everything the program knows of one kind of block.
+type Kind struct {
+	Name      string // as in files
+	Title     string
+	Group     string // of the block shelf
+	Text      string
+	Ports     []Port
+	Params    []Param
+	Losses    []LossKind
+	Equations []Equation
+	Rating    string // key of the parameter that limits its pressure, if any
+	// Symbol returns the name of its drawing symbol.
+	Symbol func(b *Block) string
+	// check adds what only this kind can say of a block.
+	check func(k *Kind, b *Block, bad func(level Level, param, format string, args ...any))
+	// build makes the model of a block; nil for blocks that only join or fix nodes.
+	build func(c *compiler, b *Block) model
+}
+
+// Param returns a parameter by key, or nil.
+func (k *Kind) Param(key string) *Param {
+	for i := range k.Params {
+		if k.Params[i].Key == key {
+			return &k.Params[i]
+		}
+	}
+	return nil
+}
+
+// Port returns a port by name, or nil.
+func (k *Kind) Port(name string) *Port {
+	for i := range k.Ports {
+		if k.Ports[i].Name == name {
+			return &k.Ports[i]
+		}
+	}
+	return nil
+}
+
+// The names of the kinds, as files write them.
+const (
+	kindTank           = "tank"
+	kindPressureSource = "pressure_source"
+	kindElectricMotor  = "electric_motor"
+	kindConverter      = "converter"
+	kindPump           = "pump"
+	kindChargePump     = "charge_pump"
+	kindHydraulicMotor = "motor"
+	kindCylinder       = "cylinder"
+	kindValve          = "valve"
+	kindRelief         = "relief"
+	kindCheck          = "check"
+	kindPilotCheck     = "pilot_check"
+	kindCounterbalance = "counterbalance"
+	kindCompensator    = "compensator"
+	kindOrifice        = "orifice"
+	kindShuttle        = "shuttle"
+	kindLine           = "line"
+	kindFilter         = "filter"
+	kindJunction       = "junction"
+)
+
+// catalog lists the kinds, one line each, in the order of the block shelf. It is
+// filled at start, since the kinds refer to one another.
+var catalog []*Kind
+
+// Catalog returns all kinds of block.
+func Catalog() []*Kind { return catalog }
+
+// KindNamed returns a kind by its name in files, or nil.
+func KindNamed(name string) *Kind {
+	for _, k := range catalog {
+		if k.Name == name {
+			return k
+		}
+	}
+	return nil
+}
+
+// Every kind's defaults are written as a user would write them, and read once here.
+func init() {
+	catalog = []*Kind{
+		tankKind,
+		pressureSourceKind,
+		electricMotorKind,
+		converterKind,
+		pumpKind,
+		chargePumpKind,
+		hydraulicMotorKind,
+		cylinderKind,
+		valveKind,
+		reliefKind,
+		checkKind,
+		pilotCheckKind,
+		counterbalanceKind,
+		compensatorKind,
+		orificeKind,
+		shuttleKind,
+		lineKind,
+		filterKind,
+		junctionKind,
+	}
+	for _, k := range catalog {
+		for i := range k.Params {
+			p := &k.Params[i]
+			if p.Max == 0 && p.Min == 0 {
+				p.Max = math.Inf(1)
+			}
+			if p.Type != Number || p.Default == "" {
+				continue
+			}
+			si, u, err := units.Parse(p.Default, p.Dim)
+			if err != nil {
+				panic(fmt.Sprintf("circuit: default of %s.%s: %v", k.Name, p.Key, err))
+			}
+			p.defaultValue = Value{SI: si, Text: p.Default, Unit: u, Origin: p.Origin, Low: math.NaN(), High: math.NaN(), Note: p.Source}
+		}
+	}
+}
+
+// checkValue reports in words what is wrong with a number for this parameter, or "".
+func (p *Param) checkValue(v Value) string {
+	u := v.Unit
+	if u.Symbol == "" && u.Factor == 0 {
+		u = units.Preferred(p.Dim, units.Metric)
+	}
+	show := func(x float64) string { return units.Format(x, u, 4) }
+	switch {
+	case math.IsNaN(v.SI) || math.IsInf(v.SI, 0):
+		return "is not a number"
+	case v.SI < p.Min || (p.Above && v.SI == p.Min):
+		if p.Above {
+			return fmt.Sprintf("is %s, must be above %s", show(v.SI), show(p.Min))
+		}
+		return fmt.Sprintf("is %s, must be at least %s", show(v.SI), show(p.Min))
+	case v.SI > p.Max:
+		return fmt.Sprintf("is %s, must be at most %s", show(v.SI), show(p.Max))
+	case v.Low > v.SI || v.High < v.SI:
+		return fmt.Sprintf("is %s, outside its own low and high", show(v.SI))
+	}
+	return ""
+}
+
+// CheckValue reports in words what is wrong with a number for this parameter, or "".
+func (p *Param) CheckValue(v Value) string { return p.checkValue(v) }
+
+// checkChoice reports what is wrong with a word for this parameter, or "".
+func (p *Param) checkChoice(w string) string {
+	if p.Type == Choice && !slices.Contains(p.Choices, w) {
+		return fmt.Sprintf("is %q, must be one of %s", w, join(p.Choices, "or"))
+	}
+	return ""
+}
+
+// join writes a list as people do: "a, b or c".
+func join(words []string, last string) string {
+	switch len(words) {
+	case 0:
+		return ""
+	case 1:
+		return words[0]
+	}
+	s := words[0]
+	for _, w := range words[1 : len(words)-1] {
+		s += ", " + w
+	}
+	return s + " " + last + " " + words[len(words)-1]
+}

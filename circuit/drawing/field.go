@@ -1,0 +1,210 @@
+package drawing
+
+import "math"
+
+// The four directions a route may take, as indices.
+const (
+	right = iota
+	down
+	left
+	up
+)
+
+var stepOf = [4]Pt{right: {1, 0}, down: {0, 1}, left: {-1, 0}, up: {0, -1}}
+
+func opposite(d int) int { return d ^ 2 }
+
+// dirOf is the index of the main direction of d, -1 for a zero vector.
+func dirOf(d Pt) int {
+	best, most := -1, 0.0
+	for i, s := range stepOf {
+		if v := s.dot(d); v > most {
+			best, most = i, v
+		}
+	}
+	return best
+}
+
+// field is the sheet as a grid of whole modules. An edge is numbered by its
+// left or upper node and its axis, 2*node + 0 (to the right) or + 1 (down).
+type field struct {
+	x0, y0, w, h int
+	delta        [4]int  // change of node index for a step
+	block        []int32 // per edge: standing cost of blocks
+	used         []int16 // per edge: count of nets on it
+	knots        []int16 // per node: corners, dots and ports
+	exits        []int16 // per node: what makes it a bad place to cross, in units of costExit
+	own          []int8  // per node: ports of the net being routed, see openAny
+	scratch      search
+}
+
+// Values of field.own beside 0 (no port) and 1 + direction (a port that is
+// still to be joined and faces that way).
+const (
+	openAny = 5 // still to be joined, from any side
+	joined  = 6
+)
+
+// newField lays out the grid. It is not ok for sheets that are too large or
+// have places that are not numbers.
+func newField(blocks []Box, nets []Net) (*field, bool) {
+	all := Box{Pt{math.Inf(1), math.Inf(1)}, Pt{math.Inf(-1), math.Inf(-1)}}
+	for _, b := range blocks {
+		all = all.with(b.Min).with(b.Max)
+	}
+	for _, n := range nets {
+		for _, p := range n.Ports {
+			all = all.with(p.At)
+		}
+	}
+	width, height := all.Max.X-all.Min.X+2*margin+2, all.Max.Y-all.Min.Y+2*margin+2
+	if !(width > 0 && height > 0 && width*height <= maxNodes) {
+		return nil, false
+	}
+	f := &field{
+		x0: int(math.Floor(all.Min.X)) - margin, y0: int(math.Floor(all.Min.Y)) - margin,
+		w: int(width) + 1, h: int(height) + 1,
+	}
+	f.delta = [4]int{right: 1, down: f.w, left: -1, up: -f.w}
+	n := f.w * f.h
+	f.block, f.used = make([]int32, 2*n), make([]int16, 2*n)
+	f.knots, f.exits = make([]int16, n), make([]int16, n)
+	f.own = make([]int8, n)
+	f.scratch.init(4 * n)
+	for _, b := range blocks {
+		f.put(b)
+	}
+	for _, net := range nets {
+		f.markPorts(net, +1)
+	}
+	return f, true
+}
+
+func (f *field) node(p Pt) int {
+	return (int(math.Round(p.Y))-f.y0)*f.w + int(math.Round(p.X)) - f.x0
+}
+
+func (f *field) at(node int) Pt {
+	return Pt{float64(node%f.w + f.x0), float64(node/f.w + f.y0)}
+}
+
+// neighbour is the node one step on, -1 beyond the grid.
+func (f *field) neighbour(node, d int) int {
+	x, y := node%f.w, node/f.w
+	switch {
+	case d == right && x == f.w-1, d == left && x == 0, d == down && y == f.h-1, d == up && y == 0:
+		return -1
+	}
+	return node + f.delta[d]
+}
+
+// edge is the number of the edge that leaves node in direction d; the
+// neighbour must exist.
+func (f *field) edge(node, d int) int {
+	if d == left || d == up {
+		node += f.delta[d]
+	}
+	return 2*node + d&1
+}
+
+// put adds a block's standing costs to the edges in and near it.
+func (f *field) put(b Box) {
+	g := b.grown(1.5)
+	for y := int(math.Ceil(g.Min.Y)) - f.y0 - 1; y <= int(g.Max.Y)-f.y0+1; y++ {
+		for x := int(math.Ceil(g.Min.X)) - f.x0 - 1; x <= int(g.Max.X)-f.x0+1; x++ {
+			if x < 0 || y < 0 || x >= f.w || y >= f.h {
+				continue
+			}
+			p := Pt{float64(x + f.x0), float64(y + f.y0)}
+			for axis, d := range [2]int{right, down} {
+				e := 2*(y*f.w+x) + axis
+				f.block[e] = max(f.block[e], blockCost(b, p, p.add(stepOf[d])))
+			}
+		}
+	}
+}
+
+// blockCost is what the block b adds to the cost of the step p-q.
+func blockCost(b Box, p, q Pt) int32 {
+	const near = 0.99 // a line a whole module away is not near
+	s := Box{p, p}.with(q)
+	hits := func(m float64) bool { // the step meets the inside of b grown by m
+		return s.Min.X < b.Max.X+m && s.Max.X > b.Min.X-m && s.Min.Y < b.Max.Y+m && s.Max.Y > b.Min.Y-m
+	}
+	switch {
+	case hits(0):
+		return costInside
+	case hits(0.01):
+		return costTouch
+	case hits(near):
+		return costNear
+	}
+	return 0
+}
+
+// markPorts enters the ports of a net as places that other nets avoid.
+func (f *field) markPorts(n Net, by int16) {
+	for _, p := range n.Ports {
+		node := f.node(p.At)
+		f.knots[node] += by
+		if d := dirOf(p.Dir); d >= 0 {
+			f.exits[node+f.delta[d]] += by
+		}
+	}
+}
+
+// mark enters a net's lines as occupied, or takes them out (by = -1).
+func (f *field) mark(t tree, by int16) {
+	for _, e := range t.edges {
+		f.used[e] += by
+	}
+	for _, node := range t.nodes {
+		if t.isKnot(f, node) {
+			f.knots[node] += by
+		}
+		if t.stiff {
+			f.exits[node] += 4 * by
+		}
+	}
+}
+
+// occupied tells whether a line lies on node along the axis, 0 = x, 1 = y.
+func (f *field) occupied(node int, axis int) bool {
+	back := [2]int{left, up}[axis]
+	if f.used[2*node+axis] > 0 {
+		return true
+	}
+	prev := f.neighbour(node, back)
+	return prev >= 0 && f.used[2*prev+axis] > 0
+}
+
+// stepCost is the price of the step from node in direction d to next.
+func (f *field) stepCost(node, d, next int) int32 {
+	e := f.edge(node, d)
+	cost := costStep + f.block[e]
+	if f.used[e] > 0 {
+		cost += costShare
+	}
+	axis := d & 1
+	if f.occupied(next, 1-axis) {
+		cost += costCrossing
+	}
+	if f.knots[next] > 0 {
+		cost += costKnot
+	}
+	cost += costExit * int32(f.exits[next])
+	for _, side := range [2]int{(d + 1) & 3, (d + 3) & 3} {
+		if beside := f.neighbour(node, side); beside >= 0 && f.neighbour(next, side) >= 0 && f.used[f.edge(beside, d)] > 0 {
+			cost += costNear
+		}
+	}
+	return cost
+}
+
+// turnCost is the price of a corner or dot at node.
+func (f *field) turnCost(node int) int32 {
+	if f.occupied(node, 0) || f.occupied(node, 1) {
+		return costKnot
+	}
+	return 0
+}

@@ -1,0 +1,140 @@
+package drawing
+
+import (
+	"math"
+	"sort"
+)
+
+// PlacedPort is a port of a block that stands on the sheet.
+type PlacedPort struct {
+	Block   int // index of its box in the call, -1 for none
+	Name    string
+	At, Dir Pt // Dir away from the block; zero if any direction will do
+}
+
+// Net is a set of ports that are to be joined.
+type Net struct {
+	Name  string
+	Type  PortType
+	Ports []PlacedPort
+}
+
+// Route is the drawn connection of one net.
+type Route struct {
+	Net      int     // index in the call
+	Segments [][2]Pt // each horizontal or vertical, cut at corners and dots
+	Dots     []Pt    // where three or more lines of the net meet
+	Through  bool    // passes through a block or along another net, for want of a way round
+}
+
+// Costs of a route, in half modules of line length. A bend is dearer than a
+// small detour, a crossing about as dear as a bend; whatever makes a drawing
+// ambiguous (a corner on another net, two nets on one line) is far dearer, and
+// a way through a block is the last resort.
+const (
+	costStep     = 2
+	costNear     = 2   // for each step within 1M of a block, or beside another net
+	costBend     = 12  // 6M of line
+	costTee      = 8   // starting at a line of the own net instead of at a port
+	costCrossing = 10  //
+	costExit     = 12  // passing right before a port of another net; four times for a shaft or rod
+	costTouch    = 60  // each step along the edge of a block
+	costKnot     = 400 // meeting a corner, dot or port of another net
+	costShare    = 500 // each step on a line of another net
+	costInside   = 9000
+)
+
+const (
+	margin   = 8       // room for routes round the outermost blocks [M]
+	maxNodes = 400_000 // larger sheets get plain elbows, to bound time and memory
+)
+
+// RouteAll joins the ports of each net by horizontal and vertical lines on
+// the module grid. Lines leave a port in its direction, keep out of the blocks
+// and avoid each other; the answer has one Route per net, in the order of nets,
+// and is the same for the same input. It does not fail: where there is no
+// free way the route is marked Through.
+func RouteAll(blocks []Box, nets []Net) []Route {
+	routes := make([]Route, len(nets))
+	f, ok := newField(blocks, nets)
+	if !ok {
+		for i, n := range nets {
+			routes[i] = elbows(i, n)
+		}
+		return routes
+	}
+	trees := make([]tree, len(nets))
+	order := routingOrder(nets)
+	// The second round lets the nets laid first make way for the later ones.
+	for round := 0; round < 2; round++ {
+		for _, i := range order {
+			f.mark(trees[i], -1)
+			trees[i] = f.grow(nets[i])
+			f.mark(trees[i], +1)
+		}
+	}
+	for i := range nets {
+		routes[i] = f.route(i, nets[i], trees[i])
+	}
+	return routes
+}
+
+// routingOrder: mechanical and electric links first, since they should be
+// straight, then oil, pilot and drain lines; short nets before long ones.
+func routingOrder(nets []Net) []int {
+	rank := map[PortType]int{Shaft: 0, Rod: 0, Electric: 0, Oil: 1, PilotLine: 2, DrainLine: 3}
+	order := make([]int, len(nets))
+	size := make([]float64, len(nets))
+	for i, n := range nets {
+		order[i] = i
+		b := portsBox(n.Ports)
+		size[i] = b.Max.X - b.Min.X + b.Max.Y - b.Min.Y
+	}
+	sort.SliceStable(order, func(a, b int) bool {
+		i, j := order[a], order[b]
+		if rank[nets[i].Type] != rank[nets[j].Type] {
+			return rank[nets[i].Type] < rank[nets[j].Type]
+		}
+		return size[i] < size[j]
+	})
+	return order
+}
+
+func portsBox(ports []PlacedPort) Box {
+	if len(ports) == 0 {
+		return Box{}
+	}
+	b := Box{ports[0].At, ports[0].At}
+	for _, p := range ports {
+		b = b.with(p.At)
+	}
+	return b
+}
+
+func (b Box) with(p Pt) Box {
+	return Box{
+		Pt{math.Min(b.Min.X, p.X), math.Min(b.Min.Y, p.Y)},
+		Pt{math.Max(b.Max.X, p.X), math.Max(b.Max.Y, p.Y)},
+	}
+}
+
+// elbows joins every port to the first by one corner at most.
+func elbows(i int, n Net) Route {
+	r := Route{Net: i, Through: true}
+	for k := 1; k < len(n.Ports); k++ {
+		a, b := n.Ports[0].At, n.Ports[k].At
+		r.Segments = appendLeg(r.Segments, a, Pt{b.X, a.Y})
+		r.Segments = appendLeg(r.Segments, Pt{b.X, a.Y}, b)
+	}
+	if len(n.Ports) > 2 {
+		r.Dots = []Pt{n.Ports[0].At}
+	}
+	return r
+}
+
+func appendLeg(s [][2]Pt, a, b Pt) [][2]Pt {
+	if a == b {
+		return s
+	}
+	return append(s, [2]Pt{a, b})
+}

@@ -1,0 +1,249 @@
+package circuit
+
+import (
+	"math"
+
+	"barlitre/circuit/balance"
+	"barlitre/circuit/duty"
+)
+
+// Unknowns and rows are scaled: pressures by scales.p, flows by scales.q, so that
+// powers come in p·q. Speeds of actuators and free shafts are counted as the flow
+// they displace. Row i of the balance belongs to unknown i and rises with it.
+
+// slot addresses a number that blocks share: an unknown of the balance (>= 0) or
+// a number that is known within a time step (< 0).
+type slot int
+
+// scales of a run.
+type scales struct{ p, q float64 }
+
+// Pressure floor of a node: the oil tears at about 0.1 bar absolute. Below it
+// the balance is met by a void, which is counted and reported, never free oil.
+const floorPressure = -0.9e5 // Pa gauge
+
+// leak ties each node to tank so weakly (1e-11 of the largest flow at 100 bar)
+// that no result shows it; it only gives pressures that nothing else determines
+// a place to rest. restLeak ties the chambers of a held actuator to the pressure
+// that its load asks for.
+const (
+	leak     = 1e-11
+	restLeak = 1e-9
+)
+
+// minResistance keeps parallel ideal parts (checks without a drop, lines of no
+// length) from trading an undetermined flow: 1e-10 of 100 bar at full flow.
+const minResistance = 1e-10
+
+// eval is one evaluation of all rows. Blocks read with val and add with flow, g and d.
+type eval struct {
+	x, fix []float64
+	g, jac []float64
+	gfix   []float64 // flow leaving the fixed nodes
+	n      int
+}
+
+func (e *eval) val(s slot) float64 {
+	if s >= 0 {
+		return e.x[s]
+	}
+	return e.fix[-1-s]
+}
+
+// add adds v to the row of s.
+func (e *eval) add(s slot, v float64) {
+	if s >= 0 {
+		e.g[s] += v
+	} else {
+		e.gfix[-1-s] += v
+	}
+}
+
+// d adds the derivative of row r by unknown c.
+func (e *eval) d(r, c slot, v float64) {
+	if r >= 0 && c >= 0 {
+		e.jac[int(r)*e.n+int(c)] += v
+	}
+}
+
+// branch adds the flow unknown q from node a to node b.
+func (e *eval) branch(a, b, q slot) float64 {
+	v := e.val(q)
+	e.add(a, v)
+	e.d(a, q, 1)
+	e.add(b, -v)
+	e.d(b, q, -1)
+	return v
+}
+
+// drop adds the row of the flow unknown q between a and b: r(q) − (pa − pb),
+// where r and its slope dr are the pressure drop at q.
+func (e *eval) drop(a, b, q slot, r, dr float64) {
+	e.add(q, r+minResistance*e.val(q)-(e.val(a)-e.val(b)))
+	e.d(q, q, dr+minResistance)
+	e.d(q, a, -1)
+	e.d(q, b, 1)
+}
+
+// conduct adds the linear flow k·(pa − pb) from a to b and returns it.
+func (e *eval) conduct(a, b slot, k float64) float64 {
+	q := k * (e.val(a) - e.val(b))
+	e.add(a, q)
+	e.d(a, a, k)
+	e.d(a, b, -k)
+	e.add(b, -q)
+	e.d(b, a, -k)
+	e.d(b, b, k)
+	return q
+}
+
+// throat is a turbulent restriction, scaled: drop = q·√(q²+ql²)/k², laminar below
+// ql, so that its slope at zero flow is finite. ql is 3e-5 of the flow at 100 bar:
+// the square-root law is then off by less than 1e-6 down to a thousandth of that flow.
+type throat struct{ k2, ql2 float64 }
+
+// throatOf makes a throat from a nominal point: qN at dpN, both scaled. Without a
+// drop, or without flow limit, it is an ideal opening.
+func throatOf(qN, dpN float64) throat {
+	if dpN <= 0 || math.IsInf(qN, 1) {
+		return throat{k2: math.Inf(1)}
+	}
+	k2 := qN * qN / dpN
+	return throat{k2, 9e-10 * k2}
+}
+
+func (t throat) at(q float64) (r, dr float64) {
+	h := math.Sqrt(q*q + t.ql2)
+	if h == 0 || math.IsInf(t.k2, 1) {
+		return 0, 0
+	}
+	return q * h / t.k2, (h + q*q/h) / t.k2
+}
+
+// model is a block as the balance sees it. One model serves one run at a time.
+type model interface {
+	// clone returns a copy for another run.
+	clone() model
+	// bind takes numbers from the parameters and conditions of the run.
+	bind(b *binding)
+	// begin prepares a time step: bounds, states, demands.
+	begin(s *step)
+	// eval adds the rows of the block.
+	eval(e *eval)
+	// book writes flows, states and powers of a balanced step.
+	book(k *booking)
+}
+
+// starter is a model with unknowns that need a start of their own.
+type starter interface {
+	cold(s *step, level int, x []float64)
+}
+
+// binding is what a model may take its numbers from.
+type binding struct {
+	p    []float64
+	cond Conditions
+	scales
+	bound *balance.Solver
+}
+
+// get returns parameter i, or fallback when the block has none.
+func (b *binding) get(i int, fallback float64) float64 {
+	if i < 0 {
+		return fallback
+	}
+	return b.p[i]
+}
+
+// step is one time step to be balanced.
+type step struct {
+	k        int // index into the series
+	axes     []axisStep
+	standing bool   // all axes stand
+	atRest   AtRest // what the prime movers do while all stand
+	commands map[string][]float64
+	solver   *balance.Solver
+	x, fix   []float64
+	rest     []float64 // by node unknown: reference pressure of the leak
+	restK    []float64 // and its conductance
+	pScale   float64
+}
+
+// axisStep is what an axis must do in a step, and what it did.
+type axisStep struct {
+	given                        duty.Given
+	demand, accel, load, command float64
+	standing                     bool
+	scaledDemand                 float64
+	speed, found                 float64 // result: speed and load
+}
+
+// restAt gives a node that nothing else determines a place to rest [Pa].
+func (s *step) restAt(node slot, pressure float64) {
+	if node >= 0 {
+		s.rest[node], s.restK[node] = pressure/s.pScale, restLeak
+	}
+}
+
+// off reports whether the prime movers are switched off.
+func (s *step) off() bool { return s.standing && s.atRest == Stop }
+
+// unloaded reports whether relief valves are vented.
+func (s *step) unloaded() bool { return s.standing && s.atRest == Unload }
+
+// bounds sets the box of an unknown; for a fixed slot it does nothing.
+func (s *step) bounds(u slot, lo, hi float64) {
+	if u >= 0 {
+		s.solver.Lo[u], s.solver.Hi[u] = lo, hi
+	}
+}
+
+// set fixes a slot for this step.
+func (s *step) set(u slot, v float64) {
+	if u >= 0 {
+		s.solver.Lo[u], s.solver.Hi[u] = v, v
+		s.x[u] = v
+	} else {
+		s.fix[-1-u] = v
+	}
+}
+
+func (s *step) val(u slot) float64 {
+	if u >= 0 {
+		return s.x[u]
+	}
+	return s.fix[-1-u]
+}
+
+// booking receives what a balanced step holds.
+type booking struct {
+	eval // for val
+	scales
+	cond  Conditions
+	step  *step
+	sig   []float64
+	pow   []float64
+	shaft []shaftBook
+	el    []float64 // W drawn at electric nodes, by node
+}
+
+type shaftBook struct{ torque, speed float64 } // N·m needed, rad/s
+
+// pa returns a pressure [Pa], m3s a flow [m³/s], watts a power [W].
+func (k *booking) pa(s slot) float64       { return k.val(s) * k.scales.p }
+func (k *booking) m3s(v float64) float64   { return v * k.scales.q }
+func (k *booking) watts(v float64) float64 { return v * k.scales.p * k.scales.q }
+
+// put writes a signal; a negative index means nobody wants it.
+func (k *booking) put(i int, v float64) {
+	if i >= 0 {
+		k.sig[i] = v
+	}
+}
+
+// lose adds to a power channel [W].
+func (k *booking) lose(i int, w float64) {
+	if i >= 0 {
+		k.pow[i] += w
+	}
+}

@@ -1,0 +1,356 @@
+package circuit
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+
+	"barlitre/circuit/balance"
+	"barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+// pressureScale is the pressure unit of the balance; flows are scaled by the
+// largest machine of the circuit.
+const pressureScale = 100e5 // Pa
+
+// lostSteps ends a run: so many unsolved steps in a row are a fault of the
+// circuit, not of a moment.
+const lostSteps = 50
+
+// ErrLost says that a run was given up.
+var ErrLost = errors.New("the circuit could not be balanced")
+
+// ErrParameters says that a parameter vector does not fit the circuit.
+var ErrParameters = errors.New("parameters do not fit the circuit")
+
+// Run balances a circuit at every time step of s and hands each to the receiver. params
+// is laid out as Compiled.Params; s must come from Compiled.Series or be a part
+// of such a series. The state returned can be handed to the next call, which
+// then goes on where this one ended. A step that cannot be balanced is marked,
+// listed in the certificate, and passed; after lostSteps in a row Run gives up
+// with an error that wraps ErrLost.
+//
+// Run has no side effects; any number may run at once on one Compiled.
+func Run(ctx context.Context, c *Compiled, params []float64, s *duty.Series, cond Conditions, st State, to Receiver) (State, Certificate, error) {
+	if len(params) != len(c.params) || len(s.Axes) != len(c.axes) {
+		return st, Certificate{}, fmt.Errorf("%w: %d numbers for %d, %d axes for %d", ErrParameters, len(params), len(c.params), len(s.Axes), len(c.axes))
+	}
+	for i, v := range params {
+		if math.IsNaN(v) || math.IsInf(v, 0) {
+			return st, Certificate{}, fmt.Errorf("%w: %s.%s is not a number", ErrParameters, c.params[i].Block, c.params[i].Key)
+		}
+	}
+	r := newRun(c, params, cond, s)
+	return r.all(ctx, st, to)
+}
+
+// run is the workspace of one call.
+type run struct {
+	*Compiled
+	models  []model
+	solver  *balance.Solver
+	ev      eval
+	step    step
+	book    booking
+	series  *duty.Series
+	sample  Sample
+	cert    Certificate
+	state   State
+	volumes []float64
+	topLoad []float64
+	scales
+}
+
+func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
+	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s}
+	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
+	x, fix := make([]float64, c.n), make([]float64, c.nfix)
+	r.ev = eval{x: x, fix: fix, gfix: make([]float64, c.nfix), n: c.n}
+	r.step = step{axes: make([]axisStep, len(c.axes)), commands: s.Commands, atRest: c.circuit.PumpAtRest, solver: r.solver,
+		x: x, fix: fix, rest: make([]float64, c.n), restK: make([]float64, c.n), pScale: r.scales.p}
+	for i := range r.rows {
+		if r.rows[i].kind == flowRow {
+			r.solver.Lo[i] = floorPressure / r.scales.p
+		}
+	}
+	for _, sh := range c.shafts {
+		if sh.sigma >= 0 {
+			r.solver.Lo[sh.sigma], r.solver.Hi[sh.sigma] = -1, 1
+		}
+	}
+	b := &binding{p: params, cond: cond, scales: r.scales, bound: r.solver}
+	for _, m := range c.models {
+		m = m.clone()
+		m.bind(b)
+		r.models = append(r.models, m)
+	}
+	r.volumes = make([]float64, len(c.axes))
+	r.topLoad = make([]float64, len(c.axes))
+	for i, m := range c.movers {
+		r.volumes[i] = 1
+		if m.volume != nil {
+			r.volumes[i] = m.volume(params)
+		}
+		for _, f := range s.Axes[i].Load {
+			r.topLoad[i] = math.Max(r.topLoad[i], math.Abs(f))
+		}
+	}
+	r.book = booking{scales: r.scales, cond: cond, step: &r.step, sig: make([]float64, len(c.signals)), pow: make([]float64, len(c.channels)),
+		shaft: make([]shaftBook, len(c.shafts)), el: make([]float64, c.electric)}
+	r.sample = Sample{Signals: r.book.sig, Power: r.book.pow, Axes: make([]AxisNow, len(c.axes)), Void: make([]float64, len(c.nodes))}
+	return r
+}
+
+// flowScale is the flow of the largest machine at full speed, at least 1 L/min.
+func (c *Compiled) flowScale(p []float64) float64 {
+	const usual = 157.0 // rad/s, 1500 rpm
+	q := units.LitrePerMinute
+	for _, s := range c.shafts {
+		q = math.Max(q, s.size(p)*usual)
+	}
+	return q
+}
+
+// Eval adds all rows: it is the balance.Problem.
+func (r *run) Eval(x, g, jac []float64) {
+	e := &r.ev
+	e.x, e.g, e.jac = x, g, jac
+	clear(e.gfix)
+	for _, n := range r.nodes {
+		if n.slot < 0 || n.pilot {
+			continue
+		}
+		k := leak + r.step.restK[n.slot]
+		g[n.slot] += leak*x[n.slot] + r.step.restK[n.slot]*(x[n.slot]-r.step.rest[n.slot])
+		jac[int(n.slot)*e.n+int(n.slot)] += k
+	}
+	for i := range r.shafts {
+		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
+		if s := &r.shafts[i]; s.free {
+			e.add(s.sigma, -e.val(s.speed))
+			e.d(s.sigma, s.speed, -1)
+		}
+	}
+	for _, m := range r.models {
+		m.eval(e)
+	}
+}
+
+func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificate, error) {
+	x := r.step.x
+	warm := st.begun && len(st.x) == len(x)
+	if warm {
+		copy(x, st.x)
+	}
+	r.state = State{travel: make([]float64, len(r.axes)), lastT: st.lastT, begun: true}
+	copy(r.state.travel, st.travel)
+	good := append([]float64(nil), x...)
+	lost := 0
+	old := make([]float64, len(r.axes))
+	for k := range r.series.T {
+		if k&255 == 0 && ctx.Err() != nil {
+			return r.state, r.cert, ctx.Err()
+		}
+		r.begin(k)
+		if !warm {
+			r.cold(0, x)
+			warm = true
+		}
+		res := r.solver.Solve(r, x, 5, r.cold)
+		r.certify(k, res)
+		if res.Solved() {
+			lost = 0
+			copy(good, x)
+		} else if lost++; lost >= lostSteps {
+			return r.state, r.cert, fmt.Errorf("%w: %d time steps in a row, the last at %g s, worst at %s (%s)", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0].Where, r.cert.Unsolved[0].Residual)
+		}
+		r.report(k, !res.Solved(), old)
+		if !res.Solved() {
+			copy(x, good)
+		}
+		if err := to.Sample(&r.sample); err != nil {
+			return r.state, r.cert, err
+		}
+	}
+	r.state.x = append([]float64(nil), x...)
+	return r.state, r.cert, nil
+}
+
+// begin sets the demands of step k and lets every block prepare.
+func (r *run) begin(k int) {
+	s := &r.step
+	s.k, s.standing = k, true
+	for i := range s.axes {
+		a, d := &s.axes[i], &r.series.Axes[i]
+		*a = axisStep{given: d.Given, standing: d.Standing[k]}
+		if d.Load != nil {
+			a.load = d.Load[k]
+		}
+		if d.Command != nil {
+			a.command = d.Command[k]
+		}
+		if d.Speed != nil {
+			a.demand, a.accel = d.Speed[k], d.Accel[k]
+		}
+		a.scaledDemand = a.demand * r.volumes[i] / r.scales.q
+		s.standing = s.standing && a.standing
+		if v := r.movers[i].speed; v >= 0 && a.given == duty.MotionLoad {
+			s.x[v] = a.scaledDemand
+		}
+	}
+	clear(s.rest)
+	clear(s.restK)
+	for _, m := range r.models {
+		m.begin(s)
+	}
+}
+
+// Cold starts at several pressure levels; level 0 is the usual one.
+var coldPressure = [...]float64{0.3, 0.03, 1.2, 2.5, 0.8}
+
+func (r *run) cold(level int, x []float64) {
+	for i := range x {
+		x[i] = 0
+		if r.rows[i].kind == flowRow {
+			x[i] = coldPressure[level%len(coldPressure)]
+		}
+	}
+	for i, m := range r.movers {
+		if m.speed >= 0 {
+			x[m.speed] = r.step.axes[i].scaledDemand
+			x[m.sigma] = sign(r.step.axes[i].scaledDemand)
+		}
+	}
+	for _, m := range r.models {
+		if st, ok := m.(starter); ok {
+			st.cold(&r.step, level, x)
+		}
+	}
+	for i := range x {
+		x[i] = math.Max(r.solver.Lo[i], math.Min(r.solver.Hi[i], x[i]))
+	}
+}
+
+// certify keeps the worst residuals of the step.
+func (r *run) certify(k int, res balance.Result) {
+	c := &r.cert
+	c.Steps++
+	if res.Rung > balance.Warm && k > 0 {
+		c.Fallbacks++
+	}
+	for i := range r.rows {
+		left := math.Abs(r.solver.Residual(i))
+		switch r.rows[i].kind {
+		case flowRow:
+			if q := left * r.scales.q; q > c.Worst {
+				c.Worst, c.WorstAt = q, r.rows[i].where
+			}
+		case forceRow:
+			f := left * r.scales.p
+			if a := r.rows[i].axis; a >= 0 {
+				f *= r.volumes[a]
+			} else {
+				f *= r.scales.q / 157
+			}
+			c.Force = math.Max(c.Force, f)
+		}
+	}
+	if res.Solved() {
+		return
+	}
+	c.Unbalanced++
+	if len(c.Unsolved) < 8 {
+		w := res.Worst
+		c.Unsolved = append(c.Unsolved, Unsolved{T: r.series.T[k], Where: r.rows[w].where, Residual: r.residual(w), Tried: balance.Tried()})
+	}
+}
+
+// residual writes what is left of a row in words.
+func (r *run) residual(i int) string {
+	left := r.solver.Residual(i)
+	switch r.rows[i].kind {
+	case flowRow:
+		return units.Format(left*r.scales.q, units.Preferred(units.Flow, units.Metric), 3)
+	default:
+		return units.Format(left*r.scales.p, units.Preferred(units.Pressure, units.Metric), 3)
+	}
+}
+
+// report books the step into the sample.
+func (r *run) report(k int, unbalanced bool, old []float64) {
+	b := &r.book
+	clear(b.pow)
+	clear(b.shaft)
+	clear(b.el)
+	b.eval = r.ev
+	b.eval.x = r.step.x
+	for _, m := range r.models {
+		m.book(b)
+	}
+	for _, m := range r.models {
+		if e, ok := m.(*electricModel); ok {
+			e.bookShaft(b)
+		}
+	}
+	for _, m := range r.models {
+		if c, ok := m.(*converterModel); ok {
+			c.bookSupply(b)
+		}
+	}
+	for _, p := range r.portP {
+		b.sig[p.signal] = b.pa(p.node)
+	}
+	r.voids(b)
+	r.axesNow(k, unbalanced, old)
+}
+
+// voids finds what is missing at nodes that rest on the floor.
+func (r *run) voids(b *booking) {
+	for i, n := range r.nodes {
+		r.sample.Void[i] = 0
+		if n.slot < 0 || n.pilot || b.x[n.slot] > r.solver.Lo[n.slot] {
+			continue
+		}
+		q := b.m3s(math.Max(0, r.solver.Row(int(n.slot))))
+		r.sample.Void[i] = q
+		b.pow[r.Compiled.void] += -floorPressure * q
+	}
+}
+
+func (r *run) axesNow(k int, unbalanced bool, old []float64) {
+	s := &r.sample
+	dt := 0.0
+	if k > 0 {
+		dt = r.series.T[k] - r.series.T[k-1]
+	}
+	s.T, s.Standing, s.Holding, s.Driving = r.series.T[k], r.step.standing, false, false
+	s.Stopped, s.Unbalanced = r.step.off(), unbalanced
+	for i := range r.axes {
+		a := &r.step.axes[i]
+		now := AxisNow{Demand: a.demand, Speed: a.speed, Load: a.found, Standing: a.standing}
+		if a.given == duty.LoadCommand {
+			now.Demand = a.speed
+		}
+		s.Axes[i] = now
+		s.Driving = s.Driving || now.Load*now.Speed < 0
+		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > holdShare*r.topLoad[i])
+		r.state.travel[i] += dt * (old[i] + now.Speed) / 2
+		old[i] = now.Speed
+	}
+	r.state.lastT = s.T
+}
+
+// holdShare is the share of the largest load of a duty above which a standing
+// axis counts as holding, below it as idle (our choice, stated in the report).
+const holdShare = 0.1
+
+// Nodes names the nodes, in the order of Sample.Void.
+func (c *Compiled) Nodes() []string {
+	out := make([]string, len(c.nodes))
+	for i, n := range c.nodes {
+		out[i] = n.name
+	}
+	return out
+}

@@ -1,0 +1,122 @@
+package circuit
+
+import "barlitre/machines/units"
+
+// Role says on which side of the energy balance a channel stands.
+type Role int
+
+// The roles. For every time step
+//
+//	supply = work + stored + sum of losses
+//
+// up to what the balance left unsolved, with supply summed over all prime movers.
+const (
+	Supply Role = iota // power at the mains terminals of a motor or converter, > 0 drawn, < 0 returned
+	Work               // power given to the load of an axis, > 0 resisted, < 0 the load drives
+	Stored             // power going into a store (moved mass, lifted oil, pressure source), either sign
+	Loss               // power lost, >= 0
+)
+
+// Channel is one power that a run books at every time step [W].
+type Channel struct {
+	Role  Role
+	Block string
+	Kind  string // of loss, as in the catalog; else "supply", the axis name, or what stores it
+	Sink  Sink   // of a loss
+}
+
+// Signal is one quantity that a run reports at every time step, in SI.
+type Signal struct {
+	Name  string // "RV1.P.p", "C1.v", "P1.shaft"
+	Block string
+	Port  string // "" when it is the block's own
+	What  string // "p", "q", "v", "w", "F", "T", "e", "u", "shaft", "electric"
+	Title string // for plots: "pressure at P"
+	Dim   units.Dim
+	// Undetermined is set for pressures that the circuit does not determine at
+	// standstill, behind closed valves; what is shown then is a convention.
+	Chamber bool
+}
+
+// AxisNow is the state of one axis at a time step.
+type AxisNow struct {
+	Demand   float64 // m/s or rad/s; equals Speed where motion is not given
+	Speed    float64
+	Load     float64 // N or N·m
+	Standing bool
+}
+
+// Sample is one time step of a run. Its slices are used again for the next one.
+type Sample struct {
+	T          float64
+	Signals    []float64 // by Compiled.Signals
+	Power      []float64 // W, by Compiled.Channels
+	Axes       []AxisNow // by Compiled.Axes
+	Standing   bool      // every axis stands
+	Holding    bool      // every axis stands and at least one under a load
+	Driving    bool      // the load drives an axis
+	Stopped    bool      // the prime movers are switched off
+	Void       []float64 // m³/s missing at each node, by Compiled.Nodes; 0 where the node is filled
+	Unbalanced bool      // not solved: Signals and Power are of the nearest point found
+}
+
+// Receiver takes the time steps of a run, in order. An error ends the run.
+type Receiver interface {
+	Sample(s *Sample) error
+}
+
+// Receivers passes each time step to several.
+type Receivers []Receiver
+
+// Sample passes s on.
+func (ss Receivers) Sample(s *Sample) error {
+	for _, k := range ss {
+		if err := k.Sample(s); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// Conditions hold for a whole call of Run: the oil at its temperature.
+type Conditions struct {
+	Density   float64 // kg/m³
+	Viscosity float64 // dynamic, Pa·s
+}
+
+// Certificate says how well the time steps of a run are balanced.
+type Certificate struct {
+	Steps     int
+	Fallbacks int     // steps that needed more than Newton's method from the step before
+	Worst     float64 // m³/s, largest flow that a node was left with
+	WorstAt   string
+	Force     float64 // N, largest force (torque over its displacement, times an area) left at an actuator
+	// Unsolved lists the first few steps that stayed unbalanced; Unbalanced counts them all.
+	Unbalanced int
+	Unsolved   []Unsolved
+}
+
+// Unsolved names a time step that could not be balanced.
+type Unsolved struct {
+	T        float64
+	Where    string // node or block with the largest residual
+	Residual string // in L/min, bar or kN
+	Tried    []string
+}
+
+// State is carried from one call of Run to the next: the last solution, where
+// the axes are, and what is stored. The zero State starts afresh.
+type State struct {
+	x      []float64
+	travel []float64 // m or rad, by axis
+	lastT  float64
+	begun  bool
+}
+
+// Travel returns how far axis i has gone since the first step [m or rad].
+func (s State) Travel(i int) float64 {
+	if i < len(s.travel) {
+		return s.travel[i]
+	}
+	return 0
+}
