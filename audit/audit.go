@@ -191,16 +191,18 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	params, series := c.Defaults(), c.Series(r.Duty)
 	steps := len(series.T)
 	ledger := NewLedger(c.Channels(), ShaftSignals(j.run.Circuit, c.Signals()), steps)
-	watch, plot := c.NewWatch(params), newRecorder(c.Signals(), c.Channels(), steps)
-	sinks := circuit.Receivers{ledger, watch, plot, &stepCounter{progress: j.progress, of: steps}}
+	watch, plot := c.NewWatch(params, series), newRecorder(c.Signals(), c.Channels(), steps)
+	counter := &stepCounter{progress: j.progress, of: steps}
+	receivers := circuit.Receivers{ledger, watch, plot, counter}
 	table, err := j.openTable(c, r, number)
 	if err != nil {
 		return err
 	}
 	if table != nil {
-		sinks = append(sinks, table)
+		receivers = append(receivers, table)
 	}
-	_, cert, err := circuit.Run(ctx, c, params, series, j.solution.Conditions, circuit.State{}, sinks)
+	_, cert, err := circuit.Run(ctx, c, params, series, j.solution.Conditions, circuit.State{}, receivers)
+	j.progress.add(progressParts - counter.passed)
 	if table != nil {
 		if failed := table.close(); failed != nil {
 			return failed
@@ -216,7 +218,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	r.Certificate, r.Plot = cert, plot.plot
 	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls()
 	r.Balance = ledger.Balance(r.Duty.Repeats)
-	j.note(r.Duty.Name, watch.Findings(r.Duty.Name))
+	j.note(r.Duty.Name, watch.Findings())
 	return nil
 }
 

@@ -2,6 +2,7 @@ package audit
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"barlitre/circuit"
@@ -46,6 +47,12 @@ func (s *Solution) Cautions() []CautionText {
 			"ISO 13732-1 gives burn thresholds by time of contact.", units.Format(s.Oil, units.Preferred(units.Temperature, units.Metric), 3))})
 	}
 	for _, c := range s.Circuits {
+		own := circuitCautions(c)
+		for _, f := range c.Findings {
+			if f.Level == circuit.Caution && !slices.Contains(own, f) {
+				out = append(out, CautionText{Circuit: f.Circuit, Block: f.Block, Topic: "As drawn", Text: f.Text})
+			}
+		}
 		out = append(out, c.cautions()...)
 	}
 	return out
@@ -89,14 +96,12 @@ func (c *CircuitRun) loadCautions(say sayCaution) {
 		if axis == "" || !held && !driven {
 			continue
 		}
+		text := "A load stands on or drives axis %s. This audit takes for granted that %s holds it and does not show that it does. " +
+			"Keep, test and prove the holding device at the actuator by the rules for the machine, before and after any change."
 		if b.Word("hold") == "pump" {
-			say(b.ID, "Suspended load", "%s holds axis %s by its pump. Pump leakage lets it creep, a power failure or a drive that trips lets it go, "+
-				"and torque at standstill heats the motor. A load that can fall or close needs a valve at the actuator or a brake "+
-				"with a proof of its own; none is credited here.", c.Circuit.Name, axis)
-		} else {
-			say(b.ID, "Suspended load", "A load stands on or drives axis %s. This audit takes for granted that %s holds it and does not show that it is. "+
-				"Keep, test and prove the holding device at the actuator by the rules for the machine before and after any change.", axis, holder(b.Word("hold")))
+			text += " Torque at standstill heats the motor, and ends with the power."
 		}
+		say(b.ID, "Suspended load", text, axis, holder(b.Word("hold")))
 	}
 }
 
@@ -111,11 +116,9 @@ func holder(hold string) string {
 // pressureCautions are about what limits pressure, and what raises it.
 func (c *CircuitRun) pressureCautions(say sayCaution) {
 	if ids := c.blocksOf("relief"); len(ids) > 0 {
-		say(ids[0], "Relief valves", "%s limit pressure to keep people and machine from harm. No saving is a reason to raise, block or leave out a relief valve. "+
+		say(ids[0], "Relief valves", "Relief valves (%s) keep people and machine from harm. No saving is a reason to raise, block or leave out a relief valve. "+
 			"Only the machine's maker, or a qualified person by the maker's instructions, changes a setting. "+
 			"Every volume that can be shut off needs a limit of its own, against heating and loads from outside as well.", strings.Join(ids, ", "))
-	} else {
-		say("", "Relief valves", "%s draws no relief valve. A circuit as built needs pressure limited at every pump outlet and every volume that can be shut off.", c.Circuit.Name)
 	}
 	if ids := append(c.blocksOf("counterbalance"), c.blocksOf("pilot_check")...); len(ids) > 0 {
 		say(ids[0], "Load-holding valves", "Settings of %s decide whether a load stays up and comes down steadily. They follow from the machine maker's instructions, not from the least loss found here.",

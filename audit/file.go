@@ -60,35 +60,36 @@ const Format = "barlitre/1"
 // Where both a viscosity and a grade are given, the viscosity and the density
 // hold at the working temperature, and the grade says how they change with it.
 //
-// A duty:
+// Duties and circuits are lists:
 //
-//   - name: day shift
-//     hours: 3000 h               a year; 0 when not given
-//     repeats: yes                the cycle follows itself without pause; yes when not given
-//     step: 10 ms                 between time steps; when not given a thousandth of the
-//     cycle, rounded to 1, 2 or 5, at most 10 ms
-//     points: {t: [0 s, 2 s], ram.speed: [0 m/s, 0.15 m/s], "ram.load [kN]": [5, 5]}
-//     phases: {approach: 0 s, press: 2.1 s}
+//	duties:
+//	- name: day shift
+//	  hours: 3000 h               a year; 0 when not given
+//	  repeats: yes                the cycle follows itself without pause; yes when not given
+//	  step: 10 ms                 between time steps; when not given a thousandth of the
+//	                              cycle, rounded to 1, 2 or 5, at most 10 ms; 0 s: rows only
+//	  points: {t: [0 s, 2 s], ram.speed: [0 m/s, 0.15 m/s], "ram.load [kN]": [5, 5]}
+//	  phases: {approach: 0 s, press: 2.1 s}
+//	  note: text
+//	circuits:
+//	- name: As found
+//	  role: as found | proposal   when not given the first is as found, others are proposals
+//	  note: text
+//	  pump_at_rest: keep | unload | stop
+//	  retrofit_cost: {low: 20000 EUR, likely: 26000 EUR, high: 35000 EUR, note: text}
+//	  blocks:
+//	    RV1: {kind: relief, crack: 160 bar, at: [12, 30], turn: 0, mirror: no}
+//	  lines: [P1.P - V1.P - RV1.P]
 //
-// In place of points stands `file: press.csv`, a table beside the audit file (or
+// In place of points may stand "file: press.csv", a table beside the audit file (or
 // in a folder below it) whose head has the same names with their units: see
 // recording.ReadTable. A track is axis.speed, axis.position, axis.load,
 // axis.command, or block.command for a block that is commanded by itself.
 //
-// A circuit:
-//
-//   - name: As found
-//     role: as found | proposal   when not given: the first is as found, others are proposals
-//     note: text
-//     pump_at_rest: keep | unload | stop
-//     retrofit_cost: {low: 20000 EUR, likely: 26000 EUR, high: 35000 EUR, note: text}
-//     blocks:
-//     RV1: {kind: relief, crack: 160 bar, at: [12, 30], turn: 0, mirror: no}
-//     lines: [P1.P - V1.P - RV1.P]
-//
 // A block is its kind, the parameters of that kind (see circuit.Catalog), and its
-// place on the sheet. Its id is made of letters, digits and _. A line joins the
-// ports it names. retrofit_cost is for proposals; low and high go together.
+// place on the sheet: at in modules, quarter turns, mirrored or not. Its id is
+// made of letters, digits and _. A line joins the ports that it names. A
+// retrofit_cost is for proposals; low and high go together.
 type File struct {
 	Path  string // where it was read from; "" when it has no file yet
 	Title string
@@ -191,15 +192,13 @@ func Read(path string) (*File, []circuit.Finding) {
 // Parse reads an audit file from memory, as Read does; open reads the recordings
 // that it names and may be nil when there are none. path is kept for Save.
 func Parse(data []byte, open Open, path string) (*File, []circuit.Finding) {
-	return parse(data, open, path, map[string]*recording.Table{})
+	return parse(slices.Clone(data), open, path, map[string]*recording.Table{})
 }
 
 // Circuit returns a circuit by name, or nil.
 func (f *File) Circuit(name string) *CircuitEntry {
-	for i := range f.Circuits {
-		if f.Circuits[i].Name == name {
-			return &f.Circuits[i]
-		}
+	if i := f.circuitIndex(name); i >= 0 {
+		return &f.Circuits[i]
 	}
 	return nil
 }
@@ -215,8 +214,8 @@ func (f *File) Bytes() []byte { return slices.Clone(f.data) }
 // Save writes the file. An existing file is replaced at once or not at all, and
 // keeps its permissions. Recordings are not copied along.
 func (f *File) Save(path string) error {
-	if real, err := filepath.EvalSymlinks(path); err == nil {
-		path = real // replace what a link points to, not the link
+	if target, err := filepath.EvalSymlinks(path); err == nil {
+		path = target // replace what a link points to, not the link
 	}
 	mode := os.FileMode(0o644)
 	if info, err := os.Stat(path); err == nil {

@@ -1,11 +1,8 @@
 package audit
 
 import (
-	"errors"
 	"fmt"
-	"io/fs"
 	"math"
-	"path/filepath"
 	"strings"
 
 	"gopkg.in/yaml.v3"
@@ -52,7 +49,7 @@ func nameOf(item *yaml.Node) (string, *yaml.Node) {
 
 func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 	s := scope{duty: name, where: fmt.Sprintf("duty %q", name)}
-	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "points", "file", "phases")
+	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "points", "file", "phases")
 	d := &duty.Duty{Name: name}
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
@@ -65,6 +62,7 @@ func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 		}
 	}
 	d.Repeats = r.flag(s, f, "repeats", true)
+	d.Sampled = !r.flag(s, f, "instants", true)
 	before := len(r.found)
 	src, at := r.points(s, d, f, n)
 	if step, ok := r.optional(s, f, "step", units.Time); !ok {
@@ -259,71 +257,4 @@ func (r *reader) axisNamesKnown() []string {
 		out = append(out, a.Name)
 	}
 	return out
-}
-
-// recorded reads the rows from a file beside the audit file.
-func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node) Source {
-	name, ok := r.scalar(s, n, "file", "the name of a CSV file")
-	if !ok {
-		return Source{}
-	}
-	if strings.Contains(name, `\`) || !filepath.IsLocal(filepath.FromSlash(name)) {
-		r.bad(s, n, "file", "%q must lie beside the audit file or in a folder below it; write folder/name.csv", name)
-		return Source{}
-	}
-	table := r.table(s, n, name)
-	if table == nil {
-		return Source{}
-	}
-	if table.Column("t") == nil {
-		r.bad(s, n, "file", "%s has no column t; name the time stamps %q in its head", name, "t [s]")
-	}
-	in := s
-	in.where = fmt.Sprintf("%s, %s", s.where, name)
-	for _, c := range table.Columns {
-		dim, ok := r.column(in, d, n, c.Name)
-		if !ok {
-			continue
-		}
-		u, ok := units.Find(c.Unit, dim)
-		if !ok {
-			_, err := units.ParseUnit(c.Unit, dim)
-			r.bad(in, n, c.Name, "%v, between brackets in the head", err)
-			continue
-		}
-		si := make([]float64, len(c.Values))
-		for i, x := range c.Values {
-			si[i] = u.ToSI(x)
-		}
-		r.keep(d, c.Name, si)
-	}
-	return Source{File: name, SHA256: table.SHA256}
-}
-
-// table reads a recording, once.
-func (r *reader) table(s scope, n *yaml.Node, name string) *recording.Table {
-	f := r.file
-	if t := f.tables[name]; t != nil {
-		return t
-	}
-	if f.open == nil {
-		r.bad(s, n, "file", "%s cannot be read: the audit has no folder yet; save it first", name)
-		return nil
-	}
-	data, err := f.open(name)
-	if err != nil {
-		if pe := (*fs.PathError)(nil); errors.As(err, &pe) {
-			err = pe.Err // its path is that of this computer
-		}
-		r.bad(s, n, "file", "%s cannot be read: %v; put the recording beside the audit file", name, err)
-		return nil
-	}
-	t, faults := recording.ReadTable(name, data)
-	for _, fault := range faults {
-		r.bad(s, n, "file", "%v", fault)
-	}
-	if t != nil {
-		f.tables[name] = t
-	}
-	return t
 }

@@ -52,13 +52,19 @@ func distance(a, b []rune) int {
 	return rows[len(a)][len(b)]
 }
 
-// guess ends a message about an unknown word: the nearest known one, else all.
+// fewWords is how many known words a message lists beside its guess.
+const fewWords = 5
+
+// guess ends a message about an unknown word: the nearest known one, and all of
+// them where they are few or none is near.
 func guess(word string, known []string) string {
-	if n := nearest(word, known); n != "" {
-		return fmt.Sprintf("; did you mean %q?", n)
+	var text string
+	n := nearest(word, known)
+	if n != "" {
+		text = fmt.Sprintf("; did you mean %q?", n)
 	}
-	if len(known) == 0 {
-		return ""
+	if len(known) > 0 && (n == "" || len(known) <= fewWords) {
+		text += "; known here: " + strings.Join(known, ", ")
 	}
-	return "; known here: " + strings.Join(known, ", ")
+	return strings.Replace(text, "?;", "?", 1)
 }

@@ -97,11 +97,11 @@ func (r *reader) entries(s scope, n *yaml.Node, key string) []entry {
 	for i := 0; i+1 < len(n.Content); i += 2 {
 		k, v := n.Content[i], n.Content[i+1]
 		if k.Kind != yaml.ScalarNode {
-			r.bad(s, k, key, "a key must be a word")
+			r.bad(s, k, key, "a key must be a word, not a list or a mapping")
 			continue
 		}
 		if first, twice := line[k.Value]; twice {
-			r.bad(s, k, k.Value, "stands here twice, %s; take one out or rename it", lines(first, k.Line))
+			r.bad(s.in(key), k, k.Value, "stands here twice, %s; take one out or rename it", lines(first, k.Line))
 			continue
 		}
 		line[k.Value] = k.Line

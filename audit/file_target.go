@@ -34,7 +34,7 @@ func (f *File) find(target string) ([]place, error) {
 		name, rest = strings.TrimSpace(target[:i]), target[i+1:]
 	}
 	words := strings.Split(strings.TrimSpace(rest), ".")
-	if name != "" && f.Circuit(name) == nil {
+	if name != "" && f.circuitIndex(name) < 0 {
 		var names []string
 		for _, c := range f.Circuits {
 			names = append(names, c.Name)
@@ -56,10 +56,10 @@ func (f *File) blockPlaces(target, name string, words []string) ([]place, error)
 	var places []place
 	var fault error
 	for i := range f.Circuits {
-		if name != "" && f.Circuits[i].Name != name {
+		if name != "" && i != f.circuitIndex(name) {
 			continue
 		}
-		m, kind := f.blockNode(f.Circuits[i].Name, words[0])
+		m, kind := f.blockNode(i, words[0])
 		if m == nil {
 			continue
 		}
@@ -120,7 +120,7 @@ func (p *place) beside(target, attribute string, isNumber bool) error {
 
 // circuitPlace finds what a circuit has besides blocks.
 func (f *File) circuitPlace(target, name string, words []string) ([]place, error) {
-	p := place{mapping: f.circuitNode(name), key: words[0], label: target, isText: words[0] == "note"}
+	p := place{mapping: f.circuitNode(f.circuitIndex(name)), key: words[0], label: target, isText: words[0] == "note"}
 	switch {
 	case p.mapping == nil:
 		return nil, fmt.Errorf("%s: %w", target, errLayout)
@@ -157,22 +157,23 @@ func (f *File) sectionPlace(target string, words []string) ([]place, error) {
 	return []place{p}, nil
 }
 
+// circuitIndex returns the place of a circuit in the file, −1 where there is
+// none; the first of two with one name.
+func (f *File) circuitIndex(name string) int {
+	return slices.IndexFunc(f.Circuits, func(c CircuitEntry) bool { return c.Name == name })
+}
+
 // circuitNode returns the mapping of a circuit, or nil.
-func (f *File) circuitNode(name string) *yaml.Node {
-	for i := range f.Circuits {
-		if f.Circuits[i].Name == name {
-			if n := item(child(f.root, "circuits"), i); n != nil && n.Kind == yaml.MappingNode {
-				return n
-			}
-			break
-		}
+func (f *File) circuitNode(i int) *yaml.Node {
+	if n := item(child(f.root, "circuits"), i); n != nil && n.Kind == yaml.MappingNode {
+		return n
 	}
 	return nil
 }
 
 // blockNode returns the mapping of a block and its kind, nil where there is none.
-func (f *File) blockNode(circuitName, id string) (*yaml.Node, *circuit.Kind) {
-	m := child(child(f.circuitNode(circuitName), "blocks"), id)
+func (f *File) blockNode(i int, id string) (*yaml.Node, *circuit.Kind) {
+	m := child(child(f.circuitNode(i), "blocks"), id)
 	if m == nil || m.Kind != yaml.MappingNode {
 		return nil, nil
 	}

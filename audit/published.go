@@ -30,7 +30,7 @@ const (
 
 // published judges the saving of a comparison.
 func published(c *Comparison) Published {
-	if !throttled(c.Base.Circuit) || !pumpControlled(c.Proposal.Circuit) {
+	if !known(c.SavedShare) || !throttled(c.Base.Circuit) || !pumpControlled(c.Proposal.Circuit) {
 		return Published{Text: "No published range is at hand for this kind of change."}
 	}
 	p := Published{Known: true}

@@ -87,10 +87,11 @@ func lossTable(p printer, b *Balance) Table {
 	t := Table{Title: "Where the energy of one cycle goes",
 		Head: []string{"", "to", "a cycle", "share of drawn", "of which while the load drives", "while holding", "while idle"}}
 	whole := b.SupplyIn.Total()
+	energy := func(e float64) string { return p.energy(nothing(e, whole)) }
 	row := func(sum bool, name, to string, e Split) {
-		t.add(sum, name, to, p.energy(e.Total()), shareText(p, e.Total(), whole), p.energy(e.Driving), p.energy(e.Holding), p.energy(e.Idle))
+		t.add(sum, name, to, energy(e.Total()), shareText(p, e.Total(), whole), energy(e.Driving), energy(e.Holding), energy(e.Idle))
 	}
-	for _, l := range b.Losses {
+	for _, l := range shown(b.Losses, whole) {
 		row(false, l.Block+": "+l.Kind, string(l.Sink), l.Energy)
 	}
 	row(false, "work against loads", "load", b.WorkPositive())
@@ -102,12 +103,24 @@ func lossTable(p printer, b *Balance) Table {
 	return t
 }
 
+// shown drops losses too small to print: below a billionth of what is drawn. A
+// result file holds them all.
+func shown(rows []LossRow, drawn float64) []LossRow {
+	var out []LossRow
+	for _, r := range rows {
+		if e := r.Energy.Total(); e != 0 && math.Abs(e) >= 1e-9*drawn {
+			out = append(out, r)
+		}
+	}
+	return out
+}
+
 // shareText writes part of whole, "n/a" when there is no whole.
 func shareText(p printer, part, whole float64) string {
 	if whole == 0 {
 		return "n/a"
 	}
-	return p.share(part / whole)
+	return p.share(nothing(part/whole, 1))
 }
 
 // yearLossTable prices every loss, so that the list is a list of what to mend.
@@ -119,13 +132,14 @@ func (s *Solution) yearLossTable(p printer, c *CircuitRun) Table {
 		t.Head = append(t.Head, "money a year")
 	}
 	row := func(sum bool, name, to string, e float64) {
+		e = nothing(e, y.Drawn.Total())
 		cells := []string{name, to, p.kWh(e), shareText(p, e, y.Drawn.Total())}
 		if priced {
 			cells = append(cells, p.money(e*s.Tariff.Price))
 		}
 		t.add(sum, cells...)
 	}
-	for _, l := range y.Losses {
+	for _, l := range shown(y.Losses, y.Drawn.Total()) {
 		row(false, l.Block+": "+l.Kind, string(l.Sink), l.Energy.Total())
 	}
 	row(false, "work against loads", "load", y.WorkPositive().Total())
@@ -156,10 +170,11 @@ func stateTable(p printer, y *Year) Table {
 // groupTable tells where a saving comes from.
 func groupTable(p printer, c *Comparison) Table {
 	t := Table{Title: "Where the saving comes from", Head: []string{"a year", c.Base.Circuit.Name, c.Proposal.Circuit.Name, "less"}}
-	for _, g := range c.Groups {
-		t.add(false, g.Name, p.kWh(g.Before), p.kWh(g.After), p.kWh(g.Before-g.After))
-	}
 	before, after := c.Base.Year.Drawn.Total(), c.Proposal.Year.Drawn.Total()
+	whole := math.Max(before, after)
+	for _, g := range c.Groups {
+		t.add(false, g.Name, p.kWh(nothing(g.Before, whole)), p.kWh(nothing(g.After, whole)), p.kWh(nothing(g.Before-g.After, whole)))
+	}
 	t.add(true, "drawn from the supply", p.kWh(before), p.kWh(after), p.kWh(before-after))
 	return t
 }

@@ -19,6 +19,7 @@ func (s *Solution) assumptions(p printer) []string {
 		fmt.Sprintf("Two works count as the same within %s.", units.Format(SameWork, units.Percent, 2)),
 		"Every time step is a steady balance of flows, torques and forces: compression of oil and opening times are left out.",
 		fmt.Sprintf("An axis stands when it is slower than %s of its highest speed.", units.Format(duty.StandstillShare, units.Percent, 2)),
+		"A machine holds when every axis stands and one carries more than a tenth of the largest load of the duty; below that it idles.",
 	}
 	out = append(out, s.dutyAssumptions(p)...)
 	for _, r := range s.Circuits {

@@ -1,5 +1,259 @@
 package circuit
 
-import "barlitre/circuit/duty"
+import (
+	"fmt"
+	"math"
+	"sort"
+	"strings"
 
-func Check(c *Circuit, axes []duty.Axis, duties []*duty.Duty) []Finding { return nil }
+	"barlitre/circuit/duty"
+)
+
+// checker collects findings of one circuit.
+type checker struct {
+	c      *Circuit
+	axes   []duty.Axis
+	duties []*duty.Duty
+	found  []Finding
+	nets   []*net
+	of     map[PortRef]*net
+}
+
+// Check lists what is wrong with a circuit and its duties, in words, before
+// solving: everything at once. Findings of level Stops keep it from being
+// solved. A circuit without those can be compiled for each of the duties.
+func Check(c *Circuit, axes []duty.Axis, duties []*duty.Duty) []Finding {
+	k := &checker{c: c, axes: axes, duties: duties}
+	k.blocks()
+	k.lines()
+	if !AnyStops(k.found) { // the rest needs a drawing that can be followed
+		k.nets, k.of = netsOf(c)
+		k.ports()
+		k.joints()
+		k.shafts()
+		k.islands()
+		k.rest()
+		for _, d := range duties {
+			k.dutyOf(d)
+		}
+		if !AnyStops(k.found) {
+			k.safety()
+		}
+	}
+	sort.SliceStable(k.found, func(i, j int) bool { return rank(k.found[i].Level) < rank(k.found[j].Level) })
+	return k.found
+}
+
+func rank(l Level) int { return strings.Index("stops warns caution note", string(l)) }
+
+// say adds a finding about a block.
+func (k *checker) say(level Level, b *Block, param, format string, args ...any) {
+	f := Finding{Level: level, Circuit: k.c.Name, Parameter: param, Text: fmt.Sprintf(format, args...), Line: k.c.Line}
+	if b != nil {
+		f.Block, f.Line = b.ID, b.Line
+		if v, ok := b.Values[param]; ok && v.Line > 0 {
+			f.Line = v.Line
+		} else if w, ok := b.Words[param]; ok && w.Line > 0 {
+			f.Line = w.Line
+		}
+		f.Text = b.ID + ": " + f.Text
+	}
+	k.found = append(k.found, f)
+}
+
+// blocks checks each block for itself.
+func (k *checker) blocks() {
+	if len(k.c.Blocks) == 0 {
+		k.say(Stops, nil, "", "circuit %q has no blocks; add at least a pump, a tank and an actuator", k.c.Name)
+	}
+	seen := map[string]*Block{}
+	for i := range k.c.Blocks {
+		b := &k.c.Blocks[i]
+		if old := seen[b.ID]; old != nil {
+			k.say(Stops, b, "", "another block has the same id (line %d); rename one of them", old.Line)
+		}
+		seen[b.ID] = b
+		if b.ID == "" || strings.ContainsAny(b.ID, ". /-") {
+			k.say(Stops, b, "", "an id may not be empty or hold a point, blank, slash or dash")
+		}
+		kind := KindNamed(b.Kind)
+		if kind == nil {
+			k.say(Stops, b, "kind", "there is no kind of block %q; `barlitre blocks` lists them", b.Kind)
+			continue
+		}
+		k.parameters(b, kind)
+	}
+}
+
+func (k *checker) parameters(b *Block, kind *Kind) {
+	for key, v := range b.Values {
+		switch p := kind.Param(key); {
+		case p == nil || p.Type != Number:
+			k.say(Stops, b, key, "a %s has no number %q", kind.Title, key)
+		default:
+			if fault := p.checkValue(v); fault != "" {
+				k.say(Stops, b, key, "%s (%s) %s", strings.ToLower(p.Title), key, fault)
+			}
+		}
+	}
+	for key, w := range b.Words {
+		p := kind.Param(key)
+		if p == nil || p.Type == Number {
+			k.say(Stops, b, key, "a %s has no choice %q", kind.Title, key)
+			continue
+		}
+		if fault := p.checkChoice(w.Text); fault != "" {
+			k.say(Stops, b, key, "%s %s", key, fault)
+		}
+		if p.Type == AxisRef && k.axis(w.Text) == nil {
+			k.say(Stops, b, key, "there is no axis %q; the axes are %s", w.Text, join(k.axisNames(), "and"))
+		}
+	}
+	for _, p := range kind.Params {
+		_, v := b.Values[p.Key]
+		if p.Need && !v && b.Word(p.Key) == "" {
+			want := p.Text
+			if p.Type == Choice {
+				want += ": " + join(p.Choices, "or")
+			}
+			k.say(Stops, b, p.Key, "%s is missing (%s)", p.Key, want)
+		}
+	}
+	if kind.check != nil {
+		kind.check(kind, b, func(level Level, param, format string, args ...any) { k.say(level, b, param, format, args...) })
+	}
+}
+
+func (k *checker) axis(name string) *duty.Axis {
+	for i := range k.axes {
+		if k.axes[i].Name == name {
+			return &k.axes[i]
+		}
+	}
+	return nil
+}
+
+func (k *checker) axisNames() []string {
+	var out []string
+	for _, a := range k.axes {
+		out = append(out, a.Name)
+	}
+	return out
+}
+
+// lines checks that every port named exists and stands in one line only.
+func (k *checker) lines() {
+	first := map[PortRef]int{}
+	for _, l := range k.c.Lines {
+		bad := func(format string, args ...any) {
+			k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Text: fmt.Sprintf(format, args...), Line: l.Line})
+		}
+		if len(l.Ports) == 1 {
+			bad("the line at %s leads nowhere; name the port at its other end", l.Ports[0])
+		}
+		for _, p := range l.Ports {
+			b := k.c.Block(p.Block)
+			if b == nil {
+				bad("line names %s, but there is no block %s", p, p.Block)
+				continue
+			}
+			kind := KindNamed(b.Kind)
+			if kind == nil {
+				continue
+			}
+			port := kind.Port(p.Port)
+			if port == nil {
+				bad("line names %s, but a %s has the ports %s", p, strings.ToLower(kind.Title), join(portNames(kind), "and"))
+				continue
+			}
+			if old, twice := first[p]; twice && b.Kind != kindTank {
+				bad("port %s stands in two lines (the other in line %d); write them as one line, or put a junction between", p, old)
+			}
+			first[p] = l.Line
+		}
+	}
+}
+
+func portNames(k *Kind) []string {
+	var out []string
+	for _, p := range k.Ports {
+		out = append(out, p.Name)
+	}
+	return out
+}
+
+// rest checks what happens while everything stands.
+func (k *checker) rest() {
+	switch k.c.PumpAtRest {
+	case Keep, Stop:
+	case Unload:
+		if !k.canUnload() {
+			k.say(Stops, nil, "pump_at_rest", "circuit %q unloads at rest, but nothing in it can: give a relief valve a vented pressure, a pump an unloaded_pressure, or a valve a tandem or open centre", k.c.Name)
+		}
+	case "":
+		k.say(Stops, nil, "pump_at_rest", "circuit %q does not say what its pumps do while everything stands: pump_at_rest: keep, unload or stop", k.c.Name)
+	default:
+		k.say(Stops, nil, "pump_at_rest", "pump_at_rest is %q, must be keep, unload or stop", k.c.PumpAtRest)
+	}
+}
+
+func (k *checker) canUnload() bool {
+	for i := range k.c.Blocks {
+		b := &k.c.Blocks[i]
+		_, vented := b.Values["vented"]
+		_, unloaded := b.Values["unloaded_pressure"]
+		centre := b.Word("centre")
+		if vented || unloaded || centre == "tandem" || centre == "open" {
+			return true
+		}
+	}
+	return false
+}
+
+// dutyOf checks one duty against the circuit.
+func (k *checker) dutyOf(d *duty.Duty) {
+	for _, p := range d.Check() {
+		k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Duty: d.Name, Text: p.Error()})
+	}
+	if AnyStops(k.found) {
+		return
+	}
+	for _, tr := range d.Tracks {
+		if k.axis(tr.Of) != nil {
+			continue
+		}
+		b := k.c.Block(tr.Of)
+		if b == nil {
+			continue // of another circuit
+		}
+		if tr.What != duty.Command || (b.Kind != kindValve && KindNamed(b.Kind).WordOf(b, "control") != "commanded") || follows(b) != "" {
+			k.say(Stops, b, "control", "duty %q has a track %s.%s, but %s does not take commands; set control: commanded, or drop the track", d.Name, tr.Of, tr.What, b.ID)
+		}
+	}
+	for _, a := range k.axes {
+		k.axisOf(d, a)
+	}
+	if d.Repeats {
+		k.closes(d)
+	}
+}
+
+// closes notes how far an axis drifts with every cycle.
+func (k *checker) closes(d *duty.Duty) {
+	for _, a := range k.axes {
+		tr := d.Track(a.Name, duty.Speed)
+		if tr == nil || k.actuator(a.Name) == nil {
+			continue
+		}
+		s, way := 0.0, 0.0
+		for i := 1; i < len(d.Time); i++ {
+			h := (d.Time[i] - d.Time[i-1]) / 2
+			s += h * (tr.Values[i] + tr.Values[i-1])
+			way += h * (math.Abs(tr.Values[i]) + math.Abs(tr.Values[i-1]))
+		}
+		if math.Abs(s) > 1e-6*way && way > 0 && a.Kind == duty.Linear {
+			k.found = append(k.found, Finding{Level: Note, Circuit: k.c.Name, Duty: d.Name, Text: fmt.Sprintf(
+				"duty %q: axis %s ends %s from where it began; each cycle adds that much. Close the strokes", d.Name, a.Name, mm(s))})
+		}
+	}
+}

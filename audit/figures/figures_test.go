@@ -460,3 +460,17 @@ func BenchmarkPlotMillion(b *testing.B) {
 		f.Draw(r, 900, 400, Light)
 	}
 }
+
+// TestLongUnitFindsItsRoom: the unit follows the last number of the scale and
+// must not lie on the number before.
+func TestLongUnitFindsItsRoom(t *testing.T) {
+	f := demoSteps()
+	for _, unit := range []string{"kJ", "kWh a year", "kilowatt-hours a year and machine", strings.Repeat("W", 90)} {
+		for _, w := range []float64{260, 420, 700} {
+			f.Unit = unit
+			rec := pen.NewRecorder()
+			f.Draw(rec, w, f.Height(), Light)
+			checkLabels(t, fmt.Sprintf("%s in %v", unit, w), rec, w, f.Height())
+		}
+	}
+}

@@ -1,0 +1,55 @@
+package main
+
+import (
+	"fmt"
+	"io"
+	"slices"
+)
+
+// Exit codes, the same for all commands.
+const (
+	exitOK         = 0
+	exitUnsolvable = 1 // a circuit cannot be solved
+	exitUnreadable = 2 // a file cannot be read or written, or the call is wrong
+	exitUnbalanced = 3 // a time step stayed unbalanced
+)
+
+// command is one thing the program does without a window.
+type command struct {
+	name, args, text string
+	run              func(args []string, out, errs io.Writer) int
+}
+
+var commands = []command{
+	{"check", "FILE...", "say whether the circuits of audit files can be solved, and what stands out", check},
+	{"audit", "FILE... [-set [CIRCUIT/]BLOCK.PARAM=QUANTITY]... [-json OUT|-] [-csv DIR] [-pdf OUT] [-units metric|us|si]", "balance the circuits and print their energy, heat and cost", auditFiles},
+	{"blocks", "[KIND]", "list the kinds of block, or all that is known of one", blocks},
+}
+
+// run carries out the command named by the first argument and returns the exit code.
+func run(args []string, out, errs io.Writer) int {
+	if len(args) == 0 || slices.Contains([]string{"-h", "-help", "--help", "help"}, args[0]) {
+		usage(out)
+		if len(args) == 0 {
+			return exitUnreadable
+		}
+		return exitOK
+	}
+	for _, c := range commands {
+		if c.name == args[0] {
+			return c.run(args[1:], out, errs)
+		}
+	}
+	fmt.Fprintf(errs, "barlitre: there is no command %q\n\n", args[0])
+	usage(errs)
+	return exitUnreadable
+}
+
+func usage(w io.Writer) {
+	fmt.Fprintln(w, "Barlitre balances oil-hydraulic circuits over a duty cycle and audits their energy.")
+	fmt.Fprintln(w)
+	for _, c := range commands {
+		fmt.Fprintf(w, "  barlitre %s %s\n      %s\n", c.name, c.args, c.text)
+	}
+	fmt.Fprintln(w, "\nExit codes: 0 done; 1 a circuit cannot be solved; 2 a file cannot be read or written; 3 a time step stayed unbalanced.")
+}

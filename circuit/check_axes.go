@@ -1,0 +1,188 @@
+package circuit
+
+import (
+	"fmt"
+	"strings"
+
+	"barlitre/circuit/duty"
+)
+
+// actuator returns the block that moves an axis, or nil.
+func (k *checker) actuator(axis string) *Block {
+	for i := range k.c.Blocks {
+		if k.c.Blocks[i].Word("axis") == axis {
+			return &k.c.Blocks[i]
+		}
+	}
+	return nil
+}
+
+// followers returns the controls that follow an axis, and the valves that only direct it.
+func (k *checker) followers(axis string) (follow, direct []*Block) {
+	for _, b := range sorted(k.c.Blocks) {
+		if follows(b) == axis {
+			follow = append(follow, b)
+		}
+		if b.Word("directs") == axis {
+			direct = append(direct, b)
+		}
+	}
+	return
+}
+
+func ids(bs []*Block) []string {
+	var out []string
+	for _, b := range bs {
+		out = append(out, b.ID)
+	}
+	return out
+}
+
+// axisOf checks that an axis can be moved as the duty says.
+func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
+	given := d.Given(a.Name)
+	bad := func(format string, args ...any) {
+		k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Duty: d.Name, Text: fmt.Sprintf(format, args...), Line: k.c.Line})
+	}
+	var movers []*Block
+	for _, b := range sorted(k.c.Blocks) {
+		if b.Word("axis") == a.Name {
+			movers = append(movers, b)
+		}
+	}
+	follow, direct := k.followers(a.Name)
+	switch given {
+	case duty.TooFew:
+		bad("duty %q gives only one of motion, load and command for axis %s; give exactly two", d.Name, a.Name)
+	case duty.TooMany:
+		bad("duty %q gives motion, load and command for axis %s; give exactly two of them, the third is found", d.Name, a.Name)
+	}
+	if len(movers) > 1 {
+		bad("axis %s has two actuators, %s; one block an axis, or join their shafts", a.Name, join(ids(movers), "and"))
+	}
+	if len(movers) == 0 {
+		if given != duty.None || len(follow) > 0 {
+			bad("no actuator in circuit %q moves axis %s; set axis: %s on a cylinder or motor", k.c.Name, a.Name, a.Name)
+		}
+		return
+	}
+	act := movers[0]
+	if (act.Kind == kindCylinder) != (a.Kind == duty.Linear) {
+		k.say(Stops, act, "axis", "axis %s is %s, which a %s cannot be", a.Name, a.Kind, strings.ToLower(KindNamed(act.Kind).Title))
+	}
+	if len(follow) > 1 {
+		k.say(Stops, follow[1], "follows", "%s all follow axis %s; only one control can answer for its motion", join(ids(follow), "and"), a.Name)
+	}
+	if len(follow) == 0 && given != duty.None && given != duty.LoadCommand {
+		bad("nothing in circuit %q follows axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
+	}
+	if len(follow) == 0 && given == duty.LoadCommand && len(direct) == 0 {
+		bad("nothing in circuit %q takes the command of axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
+	}
+	if len(follow) == 1 {
+		k.holding(act, follow[0], direct)
+		k.fed(follow[0])
+	}
+	if given == duty.MotionLoad {
+		k.canMove(act, d, a)
+	}
+}
+
+// holding checks that what holds an axis fits what controls it.
+func (k *checker) holding(act, control *Block, direct []*Block) {
+	hold := KindNamed(act.Kind).WordOf(act, "hold")
+	if hold == "pump" && control.Kind == kindValve {
+		k.say(Stops, act, "hold", "it is held by the pump, but %s throttles it; use hold: valve or brake", control.ID)
+	}
+	if hold == "pump" && k.c.PumpAtRest == Stop {
+		k.say(Stops, act, "hold", "it is held by the pump, but pump_at_rest: stop switches the pump off; use keep, or hold: valve or brake")
+	}
+	if hold == "pump" && len(direct) > 0 {
+		k.say(Stops, act, "hold", "it is held by the pump, but %s closes at rest; use hold: valve", direct[0].ID)
+	}
+}
+
+// fed checks that a throttling valve hangs on a supply.
+func (k *checker) fed(control *Block) {
+	if control.Kind != kindValve {
+		return
+	}
+	w := &compiler{Compiled: &Compiled{circuit: k.c}, of: k.of}
+	for n := range w.reach(PortRef{control.ID, "P"}, false) {
+		if n.src != "" {
+			return
+		}
+		for _, p := range n.ports {
+			if kind := k.c.Block(p.Block).Kind; (kind == kindPump || kind == kindChargePump) && p.Port != "D" {
+				return
+			}
+		}
+	}
+	k.say(Stops, control, "", "no pump and no pressure source feeds its port P")
+}
+
+// canMove refuses an actuator whose oil cannot get out: it must move against a blocked port.
+func (k *checker) canMove(act *Block, d *duty.Duty, a duty.Axis) {
+	forwards, backwards := false, false
+	for _, w := range []duty.What{duty.Speed, duty.Position} {
+		if tr := d.Track(a.Name, w); tr != nil {
+			for i, v := range tr.Values {
+				if w == duty.Position {
+					v = v - tr.Values[max(i-1, 0)]
+				}
+				forwards, backwards = forwards || v > 0, backwards || v < 0
+			}
+		}
+	}
+	for _, way := range []struct {
+		moves bool
+		port  string
+	}{{forwards, "B"}, {backwards, "A"}} {
+		if n := k.of[PortRef{act.ID, way.port}]; way.moves && n != nil && !k.escapes(n, act.ID) {
+			k.say(Stops, act, "", "it must move, but the oil at its port %s has no way out; connect it to a valve, pump or tank", way.port)
+		}
+	}
+}
+
+// outlets lists the ways oil can leave a node through a block, by the port it enters.
+var outlets = map[string]map[string][]string{
+	kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}},
+	kindCheck: {"in": {"out"}}, kindPilotCheck: {"V": {"C"}, "C": {"V"}}, kindCounterbalance: {"V": {"C"}, "C": {"V"}},
+	kindCompensator: {"P": {"A"}}, kindValve: {"P": {"A", "B", "T"}, "A": {"T", "P"}, "B": {"T", "P"}},
+	kindRelief: {"P": {"T"}}, kindPump: {"P": {"S"}, "S": {"P"}}, kindHydraulicMotor: {"A": {"B"}, "B": {"A"}},
+	kindCylinder: {"A": {"B"}, "B": {"A"}}, kindChargePump: {"P": {"T"}, "S": {"P"}},
+}
+
+// escapes reports whether oil can get from a node to a tank or source, not
+// through the block it comes from nor by the relief valves alone.
+func (k *checker) escapes(start *net, not string) bool {
+	seen := map[*net]bool{start: true}
+	queue := []*net{start}
+	for len(queue) > 0 {
+		n := queue[0]
+		queue = queue[1:]
+		if n.tank != "" || n.src != "" {
+			return true
+		}
+		for _, p := range n.ports {
+			b := k.c.Block(p.Block)
+			if b.ID == not {
+				// A closed loop: through pump and actuator it goes round.
+				continue
+			}
+			if b.Kind == kindPump {
+				return true
+			}
+			if b.Kind == kindRelief {
+				continue
+			}
+			for _, o := range outlets[b.Kind][p.Port] {
+				if m := k.of[PortRef{b.ID, o}]; m != nil && !seen[m] {
+					seen[m] = true
+					queue = append(queue, m)
+				}
+			}
+		}
+	}
+	return false
+}

@@ -1,0 +1,212 @@
+package circuit
+
+import (
+	"sort"
+	"strings"
+)
+
+// ports checks that what must be connected is.
+func (k *checker) ports() {
+	for i := range k.c.Blocks {
+		b := &k.c.Blocks[i]
+		kind := KindNamed(b.Kind)
+		joined := 0
+		for _, p := range kind.Ports {
+			n := k.of[PortRef{b.ID, p.Name}]
+			if n != nil && len(n.ports) > 1 {
+				joined++
+			} else if !p.Optional {
+				k.say(Stops, b, "", "port %s (%s) is not connected", p.Name, p.Text)
+			}
+		}
+		if b.Kind == kindPump && kind.WordOf(b, "control") == "load_sensing" && k.of[PortRef{b.ID, "LS"}] == nil {
+			k.say(Stops, b, "control", "a load-sensing pump needs a pilot line at its port LS")
+		}
+		if b.Kind == kindJunction && joined == 0 {
+			k.say(Warns, b, "", "the junction joins nothing")
+		}
+	}
+}
+
+// joints checks what meets in each line.
+func (k *checker) joints() {
+	for _, n := range k.nets {
+		types := map[PortType][]string{}
+		sources, oil := []string{}, false
+		for _, p := range n.ports {
+			b := k.c.Block(p.Block)
+			if b.Kind == kindJunction {
+				continue
+			}
+			port := KindNamed(b.Kind).Port(p.Port)
+			types[port.Type] = append(types[port.Type], p.String())
+			oil = oil || port.Type == Oil
+			if port.Source {
+				sources = append(sources, p.String())
+			}
+		}
+		line := 0
+		if len(n.lines) > 0 {
+			line = n.lines[0]
+		}
+		bad := func(text string) {
+			k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Text: text, Line: line})
+		}
+		var kinds []string
+		for t, ports := range types {
+			if t != Pilot || len(types) == 1 {
+				kinds = append(kinds, string(t)+" ("+ports[0]+")")
+			}
+		}
+		sort.Strings(kinds)
+		switch {
+		case len(kinds) > 1 || (len(types[Pilot]) > 0 && !oil && len(types) > 1):
+			bad("a line joins different things: " + join(kinds, "and") + "; they cannot be connected")
+		case oil && len(sources) > 0:
+			bad("signal outlet " + sources[0] + " stands on an oil line; lead it to pilot ports only")
+		case len(types[Pilot]) > 0 && !oil && len(sources) == 0:
+			bad("nothing gives a pressure to the pilot line at " + n.name() + "; lead it to an oil line, to LS of a valve or to A of a shuttle valve")
+		case len(sources) > 1:
+			bad("two signals meet at " + join(sources, "and") + "; put a shuttle valve between them")
+		}
+		k.fixedPressures(n, bad)
+	}
+	k.pressureControls()
+}
+
+// fixedPressures refuses two given pressures on one node.
+func (k *checker) fixedPressures(n *net, bad func(string)) {
+	var fixed []string
+	seen := map[string]bool{}
+	for _, p := range n.ports {
+		if b := k.c.Block(p.Block); (b.Kind == kindTank || b.Kind == kindPressureSource) && !seen[b.ID] {
+			seen[b.ID] = true
+			if b.Kind == kindPressureSource || n.src != "" {
+				fixed = append(fixed, b.ID)
+			}
+		}
+	}
+	if len(fixed) > 1 {
+		bad(join(fixed, "and") + " hold one line at pressures of their own; separate them by a valve or remove one")
+	}
+}
+
+// pressureControls refuses two pumps that each want to hold the pressure of one line.
+func (k *checker) pressureControls() {
+	at := map[*net]*Block{}
+	for _, b := range sorted(k.c.Blocks) {
+		c := KindNamed(b.Kind).WordOf(b, "control")
+		if b.Kind != kindPump || (c != "pressure" && c != "load_sensing") {
+			continue
+		}
+		n := k.of[PortRef{b.ID, "P"}]
+		if o := at[n]; o != nil && n != nil {
+			k.say(Stops, b, "control", "%s and %s both hold the pressure of one line; which gives how much is not determined. Make one of them fixed or separate them by check valves", o.ID, b.ID)
+		}
+		at[n] = b
+		if n != nil && n.src != "" {
+			k.say(Stops, b, "control", "%s holds a pressure on a line that %s already holds; separate them", b.ID, n.src)
+		}
+	}
+}
+
+// shafts checks who drives whom.
+func (k *checker) shafts() {
+	for _, n := range k.nets {
+		switch n.typ {
+		case Shaft:
+			var drives, movers, loads []string
+			for _, p := range n.ports {
+				switch b := k.c.Block(p.Block); b.Kind {
+				case kindElectricMotor:
+					drives = append(drives, b.ID)
+				case kindHydraulicMotor:
+					movers = append(movers, b.ID)
+				default:
+					loads = append(loads, b.ID)
+				}
+			}
+			if len(drives) > 1 {
+				k.say(Stops, k.c.Block(drives[1]), "", "%s each give the same shaft a speed; keep one", join(drives, "and"))
+			}
+			if len(drives)+len(movers) == 0 {
+				k.say(Stops, k.c.Block(loads[0]), "", "nothing drives the shaft of %s; connect an electric motor to it", join(loads, "and"))
+			}
+		case Electric:
+			var feeds []string
+			for _, p := range n.ports {
+				if k.c.Block(p.Block).Kind == kindConverter {
+					feeds = append(feeds, p.Block)
+				}
+			}
+			if len(feeds) > 1 {
+				k.say(Stops, k.c.Block(feeds[1]), "", "%s feed one line; keep one converter", join(feeds, "and"))
+			} else if len(feeds) == 1 && len(n.ports) == 1 {
+				k.say(Stops, k.c.Block(feeds[0]), "", "no motor is connected to it")
+			}
+		}
+	}
+	for _, b := range sorted(k.c.Blocks) {
+		if b.Kind == kindHydraulicMotor && b.Word("axis") == "" {
+			if n := k.of[PortRef{b.ID, "shaft"}]; n == nil || len(n.ports) < 2 {
+				k.say(Stops, b, "axis", "it drives nothing: give it an axis, or join its shaft to another machine")
+			}
+		}
+		if b.Kind == kindElectricMotor && (follows(b) != "" || KindNamed(b.Kind).WordOf(b, "control") == "commanded") && k.of[PortRef{b.ID, "E"}] == nil {
+			k.say(Note, b, "", "its speed varies but no converter feeds it; the losses of the converter are not counted, and what comes back goes to the mains")
+		}
+	}
+}
+
+// islands refuses oil that has no way to a tank or source: its pressure would be anything.
+func (k *checker) islands() {
+	group := map[*net]*net{}
+	var find func(n *net) *net
+	find = func(n *net) *net {
+		if g := group[n]; g != nil && g != n {
+			return find(g)
+		}
+		return n
+	}
+	for _, b := range k.c.Blocks {
+		var first *net
+		for _, p := range KindNamed(b.Kind).Ports {
+			n := k.of[PortRef{b.ID, p.Name}]
+			if p.Type != Oil || n == nil || n.typ != Oil || b.Kind == kindTank {
+				continue
+			}
+			if first == nil {
+				first = n
+			} else if a, z := find(first), find(n); a != z {
+				group[z] = a
+			}
+		}
+	}
+	fed := map[*net]bool{}
+	for _, n := range k.nets {
+		if n.tank != "" || n.src != "" {
+			fed[find(n)] = true
+		}
+	}
+	names := map[*net][]string{}
+	for _, n := range k.nets {
+		if n.typ == Oil && !fed[find(n)] {
+			for _, p := range n.ports {
+				names[find(n)] = append(names[find(n)], p.String())
+			}
+		}
+	}
+	var roots []*net
+	for r := range names {
+		roots = append(roots, r)
+	}
+	sort.Slice(roots, func(i, j int) bool { return roots[i].id < roots[j].id })
+	for _, r := range roots {
+		list := names[r]
+		if len(list) > 6 {
+			list = append(list[:6:6], "…")
+		}
+		b := k.c.Block(r.ports[0].Block)
+		k.say(Stops, b, "", "the oil at %s has no way to a tank or to a low-pressure source; its pressure is not determined. Connect a tank, or a charge pump through check valves", strings.Join(list, ", "))
+	}
+}

@@ -1,0 +1,120 @@
+package circuit
+
+import "barlitre/circuit/duty"
+
+// safety gives the cautions that a drawing asks for.
+func (k *checker) safety() {
+	for _, b := range sorted(k.c.Blocks) {
+		switch b.Kind {
+		case kindPump:
+			k.relieved(b, "P", "its outlet")
+			if n := k.of[PortRef{b.ID, "S"}]; n != nil && n.tank == "" && b.Word("both_directions") == "yes" {
+				k.relieved(b, "S", "its other side")
+			}
+		case kindCylinder:
+			k.relieved(b, "A", "the bore side")
+			k.relieved(b, "B", "the rod side")
+			k.suspended(b)
+		case kindHydraulicMotor:
+			if b.Word("axis") != "" {
+				k.relieved(b, "A", "side A")
+				k.relieved(b, "B", "side B")
+				k.suspended(b)
+			}
+		}
+	}
+}
+
+// relieved cautions where a volume can be shut off from every relief valve.
+func (k *checker) relieved(b *Block, port, name string) {
+	n := k.of[PortRef{b.ID, port}]
+	if n == nil || n.tank != "" || k.hasRelief(n) {
+		return
+	}
+	if n.src != "" {
+		return
+	}
+	k.say(Caution, b, "", "%s (%s.%s) can be closed off from every relief valve: pressure there has no limit. Put a relief valve on it; who may set it and how is for the maker of the machine and the local rules", name, b.ID, port)
+}
+
+// hasRelief reports whether oil reaches a relief valve from a node without
+// passing a part that can close.
+func (k *checker) hasRelief(start *net) bool {
+	open := map[string]map[string][]string{
+		kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}}, kindCheck: {"in": {"out"}},
+	}
+	seen := map[*net]bool{start: true}
+	queue := []*net{start}
+	for len(queue) > 0 {
+		n := queue[0]
+		queue = queue[1:]
+		if n.tank != "" || n.src != "" {
+			return true
+		}
+		for _, p := range n.ports {
+			b := k.c.Block(p.Block)
+			if (b.Kind == kindRelief && p.Port == "P") || (b.Kind == kindChargePump && p.Port == "P") {
+				return true
+			}
+			if b.Kind == kindCounterbalance && p.Port == "C" {
+				return true // opens by itself at its setting
+			}
+			for _, o := range open[b.Kind][p.Port] {
+				if m := k.of[PortRef{b.ID, o}]; m != nil && !seen[m] {
+					seen[m] = true
+					queue = append(queue, m)
+				}
+			}
+		}
+	}
+	return false
+}
+
+// suspended cautions where a load stands on a hydraulic lock that leaks or on a pump.
+func (k *checker) suspended(b *Block) {
+	hold := KindNamed(b.Kind).WordOf(b, "hold")
+	loaded := false
+	for _, d := range k.duties {
+		loaded = loaded || k.standsUnderLoad(d, b.Word("axis"))
+	}
+	if !loaded || hold == "brake" {
+		return
+	}
+	if hold == "pump" {
+		k.say(Caution, b, "hold", "a load stands on the pump alone: when power or drive fails it comes down. A pump does not hold a load; keep a load-holding valve at the actuator or a brake, with its own proof")
+		return
+	}
+	for _, port := range []string{"A", "B"} {
+		if n := k.of[PortRef{b.ID, port}]; n != nil && k.locked(n) {
+			return
+		}
+	}
+	k.say(Caution, b, "hold", "a load stands on a spool valve without a load-holding valve (pilot-operated check or counterbalance valve) at the actuator: spools leak and hoses burst. Fit one, or say that a brake holds it")
+}
+
+// standsUnderLoad reports whether a duty has an axis stand under a load.
+func (k *checker) standsUnderLoad(d *duty.Duty, axis string) bool {
+	s := d.Series(k.axes, false)
+	for i, a := range k.axes {
+		if a.Name != axis || s.Axes[i].Load == nil {
+			continue
+		}
+		for j, f := range s.Axes[i].Load {
+			if s.Axes[i].Standing[j] && f != 0 {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// locked reports whether a load-holding valve sits on a node, or behind a line.
+func (k *checker) locked(n *net) bool {
+	for _, p := range n.ports {
+		b := k.c.Block(p.Block)
+		if (b.Kind == kindPilotCheck || b.Kind == kindCounterbalance) && p.Port == "C" {
+			return true
+		}
+	}
+	return false
+}
