@@ -202,10 +202,8 @@ func (m *valveModel) begin(s *step) {
 			s.bounds(m.y, 0, throttleMax)
 			m.ref = math.Inf(1)
 			for _, br := range m.branch[:2] {
-				r, _ := br.t.at(math.Abs(m.wanted))
-				m.ref = math.Min(m.ref, r)
+				m.ref = math.Min(m.ref, m.wanted*m.wanted/br.t.k2)
 			}
-			m.ref = math.Max(m.ref, 1e-12)
 		} else {
 			s.set(m.y, 0)
 		}
@@ -279,14 +277,15 @@ func (m *valveModel) eval(e *eval) {
 			continue
 		}
 		v := e.branch(br.a, br.b, q)
-		r, dr := br.t.at(v)
 		if m.dir == 0 {
+			r, dr := br.t.at(v)
 			e.drop(br.a, br.b, q, r, dr)
 			continue
 		}
-		e.drop(br.a, br.b, q, r*f, dr*f)
+		r, dr, df := br.t.opened(v, f)
+		e.drop(br.a, br.b, q, r, dr)
 		if m.now {
-			e.d(q, m.y, r/m.ref)
+			e.d(q, m.y, df/m.ref)
 		}
 	}
 	if m.y >= 0 {

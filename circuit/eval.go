@@ -112,12 +112,23 @@ func throatOf(qN, dpN float64) throat {
 	return throat{k2, 9e-10 * k2}
 }
 
+// at returns the drop at flow q of the fully open throat and its slope.
 func (t throat) at(q float64) (r, dr float64) {
 	h := math.Sqrt(q*q + t.ql2)
 	if h == 0 || math.IsInf(t.k2, 1) {
 		return 0, 0
 	}
 	return q * h / t.k2, (h + q*q/h) / t.k2
+}
+
+// opened returns the same for an opening u with f = 1/u², and the slope by f. The
+// drop at which it turns laminar is the same at every opening.
+func (t throat) opened(q, f float64) (r, dr, df float64) {
+	h := math.Sqrt(q*q + t.ql2/f)
+	if h == 0 || math.IsInf(t.k2, 1) {
+		return 0, 0, 0
+	}
+	return f * q * h / t.k2, f * (h + q*q/h) / t.k2, q * (h - t.ql2/(2*f*h)) / t.k2
 }
 
 // model is a block as the balance sees it. One model serves one run at a time.
