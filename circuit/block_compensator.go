@@ -67,9 +67,8 @@ func (m *compensatorModel) book(k *booking) { k.through(m.P, m.A, k.val(m.q), m.
 
 func (m *compensatorModel) cold(s *step, level int, x []float64) { x[m.q], x[m.z] = 0.05, 0.1 }
 
-// throttleMax bounds the drop that a throttling control may make: 1000 times the
-// pressure scale. Without a bound there is no solution where leakage alone moves
-// an actuator faster than asked.
+// throttleMax bounds the drop that a compensator may make: 1000 times the
+// pressure scale.
 const throttleMax = 1e3
 
 // shuttleKind selects the higher of two pilot signals.

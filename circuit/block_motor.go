@@ -41,7 +41,9 @@ func (k *compiler) placeMotorMover(m *mover, b *Block) {
 	s := &k.shafts[i]
 	m.speed, m.sigma = s.speed, s.sigma
 	gear := k.param(b, "gear")
+	disp, slip := k.param(b, "displacement"), k.param(b, "slip")
 	m.volume = func(p []float64) float64 { return k.Compiled.shafts[i].size(p) * p[gear] }
+	m.slip = func(p []float64) float64 { return p[disp] * p[slip] }
 }
 
 type motorModel struct {

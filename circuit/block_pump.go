@@ -205,7 +205,7 @@ func (m *pumpModel) book(k *booking) { m.bookMachine(k) }
 
 func (m *pumpModel) cold(s *step, level int, x []float64) {
 	if m.e >= 0 {
-		x[m.e] = 0.5
+		x[m.e] = coldStartOf(level).setting
 		if m.eMin < 0 {
 			x[m.e] = 0
 		}

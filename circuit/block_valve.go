@@ -58,6 +58,10 @@ var valveKind = &Kind{
 	build: buildValve,
 }
 
+// leastOpening keeps a throttling valve from closing altogether, where nothing
+// would answer to its opening any more. At it a millionth of the open flow passes.
+const leastOpening = 1e-6
+
 // The four edges and their ports.
 const (
 	edgePA = iota
@@ -82,7 +86,7 @@ type valveModel struct {
 	tracks     bool // it is the control that is found
 	centre     string
 	q          [4]slot
-	y          slot // throttling: drop at the wanted flow, beyond that of the open edge
+	open       slot // opening of a valve that follows an axis
 	qN, dN, qC int
 	per        [edges]int
 	sig        [4]int // port flows P A B T
@@ -90,12 +94,12 @@ type valveModel struct {
 	loss       [edges]int
 	around     int
 
-	open   [edges]throat
+	full   [edges]throat
 	mid    throat
 	branch [4]branch // of the step
-	ref    float64   // smallest drop of the open edges at the wanted flow
 	dir    float64
 	wanted float64
+	flow   float64 // about what passes
 	u      float64 // commanded opening
 	now    bool    // throttling is found in this step
 	was    float64
@@ -109,7 +113,7 @@ type branch struct {
 }
 
 func buildValve(k *compiler, b *Block) model {
-	m := &valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, y: noSlot,
+	m := &valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, open: noSlot,
 		centre: KindNamed(b.Kind).WordOf(b, "centre"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), qC: k.param(b, "flow_centre"),
 		per:  [edges]int{k.param(b, "flow_PA"), k.param(b, "flow_PB"), k.param(b, "flow_AT"), k.param(b, "flow_BT")},
 		sig:  [4]int{k.port(b, "P"), k.port(b, "A"), k.port(b, "B"), k.port(b, "T")},
@@ -143,7 +147,7 @@ func buildValve(k *compiler, b *Block) model {
 		m.tracks = !m.directs && m.given == duty.MotionLoad
 	}
 	if m.tracks {
-		m.y = k.unknown(otherRow, b.ID+" opening")
+		m.open = k.unknown(otherRow, b.ID+" opening")
 	}
 	return m
 }
@@ -152,14 +156,12 @@ func (m *valveModel) clone() model { c := *m; return &c }
 
 func (m *valveModel) bind(b *binding) {
 	qN, dp := b.p[m.qN], b.p[m.dN]/b.scales.p
-	for i := range m.open {
-		m.open[i] = throatOf(b.get(m.per[i], qN)/b.scales.q, dp)
+	for i := range m.full {
+		m.full[i] = throatOf(b.get(m.per[i], qN)/b.scales.q, dp)
 	}
 	m.mid = throatOf(b.get(m.qC, qN)/b.scales.q, dp)
-	if m.y >= 0 {
-		b.bound.Lo[m.y], b.bound.Hi[m.y] = 0, throttleMax
-		b.bound.Weight[m.y] = 1000
-		b.bound.Long[m.y] = true
+	if m.open >= 0 {
+		b.bound.Lo[m.open], b.bound.Hi[m.open] = leastOpening, 1
 	}
 	m.was = math.NaN()
 }
@@ -171,11 +173,11 @@ func (m *valveModel) begin(s *step) {
 	pick := func(i int, a, b slot, t throat, edge int) { m.branch[i] = branch{a, b, t, edge, true} }
 	switch {
 	case m.dir > 0:
-		pick(0, m.P, m.A, m.open[edgePA], edgePA)
-		pick(1, m.B, m.T, m.open[edgeBT], edgeBT)
+		pick(0, m.P, m.A, m.full[edgePA], edgePA)
+		pick(1, m.B, m.T, m.full[edgeBT], edgeBT)
 	case m.dir < 0:
-		pick(0, m.P, m.B, m.open[edgePB], edgePB)
-		pick(1, m.A, m.T, m.open[edgeAT], edgeAT)
+		pick(0, m.P, m.B, m.full[edgePB], edgePB)
+		pick(1, m.A, m.T, m.full[edgeAT], edgeAT)
 	case m.centre == "tandem":
 		pick(0, m.P, m.T, m.mid, -1)
 	case m.centre == "float":
@@ -197,15 +199,11 @@ func (m *valveModel) begin(s *step) {
 			s.set(q, 0)
 		}
 	}
-	if m.y >= 0 {
+	if m.open >= 0 {
 		if m.now {
-			s.bounds(m.y, 0, throttleMax)
-			m.ref = math.Inf(1)
-			for _, br := range m.branch[:2] {
-				m.ref = math.Min(m.ref, m.wanted*m.wanted/br.t.k2)
-			}
+			s.bounds(m.open, leastOpening, 1)
 		} else {
-			s.set(m.y, 0)
+			s.set(m.open, 0)
 		}
 	}
 	if m.dir != m.was { // another position: start its edges anew
@@ -235,7 +233,7 @@ func (m *valveModel) position(s *step) {
 		}
 	}
 	m.dir = sign(want) * m.polarity.fixed()
-	m.now, m.wanted = m.tracks, a.scaledDemand
+	m.now, m.wanted, m.flow = m.tracks, a.scaledDemand, a.flow
 }
 
 // start gives the flows and the throttling of a new position a first value.
@@ -244,28 +242,32 @@ func (m *valveModel) start(s *step, x []float64) {
 		if q >= 0 && m.branch[i].on {
 			x[q] = math.Min(0.05, math.Abs(m.wanted)+1e-3)
 			if m.now {
-				x[q] = math.Abs(m.wanted)
+				x[q] = m.flow
 			}
 		}
 	}
 	if m.now {
-		x[m.y] = 0.3
+		x[m.open] = 0.3
 	}
 }
 
-func (m *valveModel) cold(s *step, level int, x []float64) { m.start(s, x) }
-
-// factor is by how much the opening raises the drop of an edge over its fully
-// open one: 1/u².
-func (m *valveModel) factor(e *eval) float64 {
+func (m *valveModel) cold(s *step, level int, x []float64) {
+	m.start(s, x)
 	if m.now {
-		return 1 + e.val(m.y)/m.ref
+		x[m.open] = coldStartOf(level).opening
 	}
-	return 1 / (m.u * m.u)
+}
+
+// opening is how far the edges are open off the centre, 0..1.
+func (m *valveModel) opening(e *eval) float64 {
+	if m.now {
+		return e.val(m.open)
+	}
+	return m.u
 }
 
 func (m *valveModel) eval(e *eval) {
-	f := m.factor(e)
+	u := m.opening(e)
 	for i, br := range m.branch {
 		q := m.q[i]
 		if q < 0 {
@@ -282,20 +284,24 @@ func (m *valveModel) eval(e *eval) {
 			e.drop(br.a, br.b, q, r, dr)
 			continue
 		}
-		r, dr, df := br.t.opened(v, f)
-		e.drop(br.a, br.b, q, r, dr)
+		// Off the centre the row is a flow, q = u·√…, so that closing the valve is no singular case.
+		full, slope := br.t.flow(e.val(br.a) - e.val(br.b))
+		e.add(q, v-u*full)
+		e.d(q, q, 1)
+		e.d(q, br.a, -u*slope)
+		e.d(q, br.b, u*slope)
 		if m.now {
-			e.d(q, m.y, df/m.ref)
+			e.d(q, m.open, -full)
 		}
 	}
-	if m.y >= 0 {
-		if m.now { // more throttling, less speed
+	if m.open >= 0 {
+		if m.now { // more opening, more speed
 			sg := sign(m.wanted)
-			e.add(m.y, -sg*(e.val(m.vel)-m.wanted))
-			e.d(m.y, m.vel, -sg)
+			e.add(m.open, sg*(e.val(m.vel)-m.wanted))
+			e.d(m.open, m.vel, sg)
 		} else {
-			e.add(m.y, e.val(m.y))
-			e.d(m.y, m.y, 1)
+			e.add(m.open, e.val(m.open))
+			e.d(m.open, m.open, 1)
 		}
 	}
 	if m.ls >= 0 {
@@ -350,7 +356,7 @@ func (m *valveModel) book(k *booking) {
 	}
 	u := 0.0
 	if m.dir != 0 {
-		u = m.dir / math.Sqrt(m.factor(&k.eval))
+		u = m.dir * m.opening(&k.eval)
 	}
 	k.put(m.sigU, u)
 }

@@ -98,8 +98,8 @@ func (e *eval) conduct(a, b slot, k float64) float64 {
 }
 
 // throat is a turbulent restriction, scaled: drop = q·√(q²+ql²)/k², laminar below
-// ql, so that its slope at zero flow is finite. ql is 3e-5 of the flow at 100 bar:
-// the square-root law is then off by less than 1e-6 down to a thousandth of that flow.
+// ql, so that its slope at zero flow is finite. ql is the flow at 1e-6 bar: at
+// 0.01 bar the flow is 2.5e-5 below that of the square-root law.
 type throat struct{ k2, ql2 float64 }
 
 // throatOf makes a throat from a nominal point: qN at dpN, both scaled. Without a
@@ -109,7 +109,7 @@ func throatOf(qN, dpN float64) throat {
 		return throat{k2: math.Inf(1)}
 	}
 	k2 := qN * qN / dpN
-	return throat{k2, 9e-10 * k2}
+	return throat{k2, 1e-8 * k2}
 }
 
 // at returns the drop at flow q of the fully open throat and its slope.
@@ -121,14 +121,12 @@ func (t throat) at(q float64) (r, dr float64) {
 	return q * h / t.k2, (h + q*q/h) / t.k2
 }
 
-// opened returns the same for an opening u with f = 1/u², and the slope by f. The
-// drop at which it turns laminar is the same at every opening.
-func (t throat) opened(q, f float64) (r, dr, df float64) {
-	h := math.Sqrt(q*q + t.ql2/f)
-	if h == 0 || math.IsInf(t.k2, 1) {
-		return 0, 0, 0
-	}
-	return f * q * h / t.k2, f * (h + q*q/h) / t.k2, q * (h - t.ql2/(2*f*h)) / t.k2
+// flow is the inverse of at: the flow of the fully open throat at a drop, and its slope.
+func (t throat) flow(dp float64) (q, dq float64) {
+	d := t.ql2 / t.k2
+	q = dp * math.Sqrt(2*t.k2/(math.Sqrt(d*d+4*dp*dp)+d))
+	h := math.Sqrt(q*q + t.ql2)
+	return q, t.k2 / (h + q*q/h)
 }
 
 // model is a block as the balance sees it. One model serves one run at a time.
@@ -186,6 +184,7 @@ type axisStep struct {
 	demand, accel, load, command float64
 	standing                     bool
 	scaledDemand                 float64
+	flow                         float64 // scaled, about what the actuator takes: motion and slip
 	speed, found                 float64 // result: speed and load
 }
 

@@ -59,7 +59,9 @@ type run struct {
 	cert    Certificate
 	state   State
 	volumes []float64
+	slip    []float64 // leakage of each actuator, m³/s per Pa
 	topLoad []float64
+	haste   float64 // by how much axes move faster than asked; see approach
 	scales
 }
 
@@ -87,11 +89,15 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 		r.models = append(r.models, m)
 	}
 	r.volumes = make([]float64, len(c.axes))
+	r.slip = make([]float64, len(c.axes))
 	r.topLoad = make([]float64, len(c.axes))
 	for i, m := range c.movers {
 		r.volumes[i] = 1
 		if m.volume != nil {
 			r.volumes[i] = m.volume(params)
+		}
+		if m.slip != nil {
+			r.slip[i] = m.slip(params) / cond.Viscosity
 		}
 		for _, f := range s.Axes[i].Load {
 			r.topLoad[i] = math.Max(r.topLoad[i], math.Abs(f))
@@ -158,7 +164,10 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 			r.cold(0, x)
 			warm = true
 		}
-		res := r.solver.Solve(r, x, 5, r.cold)
+		res := r.solver.Solve(r, x, len(coldStarts), r.cold)
+		if !res.Solved() {
+			res = r.approach(k, x, good)
+		}
 		r.certify(k, res)
 		if res.Solved() {
 			lost = 0
@@ -178,6 +187,24 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 	return r.state, r.cert, nil
 }
 
+// approach solves a step that withstood all else by way of easier ones: the axes
+// move faster at first, where throttling edges are well open, and slow down to
+// what is asked in steps of half an order of magnitude.
+func (r *run) approach(k int, x, good []float64) balance.Result {
+	defer func() { r.haste = 1 }()
+	copy(x, good)
+	var res balance.Result
+	for _, haste := range [...]float64{1000, 300, 100, 30, 10, 3, 1} {
+		r.haste = haste
+		r.begin(k)
+		res = r.solver.Solve(r, x, len(coldStarts), r.cold)
+	}
+	if res.Solved() {
+		res.Rung = balance.Levels
+	}
+	return res
+}
+
 // begin sets the demands of step k and lets every block prepare.
 func (r *run) begin(k int) {
 	s := &r.step
@@ -194,10 +221,20 @@ func (r *run) begin(k int) {
 		if d.Speed != nil {
 			a.demand, a.accel = d.Speed[k], d.Accel[k]
 		}
+		if h := r.haste; h > 1 { // at most a third of the top speed
+			a.demand *= math.Max(1, math.Min(h, r.series.Axes[i].Top/(3*math.Abs(a.demand)+1e-300)))
+		}
 		a.scaledDemand = a.demand * r.volumes[i] / r.scales.q
+		a.flow = math.Abs(a.scaledDemand)
+		if r.slip[i] > 0 {
+			a.flow += r.slip[i] * math.Abs(a.load) / r.volumes[i] / r.scales.q
+		}
 		s.standing = s.standing && a.standing
-		if v := r.movers[i].speed; v >= 0 && a.given == duty.MotionLoad {
-			s.x[v] = a.scaledDemand
+		if m := r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad {
+			s.x[m.speed] = a.scaledDemand
+			if !a.standing { // else the active set must first find out which way it rubs
+				s.x[m.sigma] = sign(a.scaledDemand)
+			}
 		}
 	}
 	clear(s.rest)
@@ -207,19 +244,29 @@ func (r *run) begin(k int) {
 	}
 }
 
-// Cold starts at several pressure levels; level 0 is the usual one.
-var coldPressure = [...]float64{0.3, 0.03, 1.2, 2.5, 0.8}
+// coldStart is a guess for a cold start: pressure of all nodes (scaled), opening
+// of throttling valves, setting of variable pumps, and speed over demand.
+type coldStart struct{ pressure, opening, setting, speed float64 }
+
+// Starts for moving freely, for a supply that is exhausted, and for a stalled
+// actuator; the first is the usual one.
+var coldStarts = [...]coldStart{
+	{0.3, 0.3, 0.5, 1}, {0.03, 0.15, 0.5, 1}, {1.2, 1, 1, 0}, {2.5, 0.6, 0.1, 1}, {0.8, 1, 1, 0.5}, {0.3, 1, 1, 0}, {1.5, 0.05, 0.05, 1},
+}
+
+func coldStartOf(level int) coldStart { return coldStarts[level%len(coldStarts)] }
 
 func (r *run) cold(level int, x []float64) {
+	guess := coldStartOf(level)
 	for i := range x {
 		x[i] = 0
 		if r.rows[i].kind == flowRow {
-			x[i] = coldPressure[level%len(coldPressure)]
+			x[i] = guess.pressure
 		}
 	}
 	for i, m := range r.movers {
 		if m.speed >= 0 {
-			x[m.speed] = r.step.axes[i].scaledDemand
+			x[m.speed] = guess.speed * r.step.axes[i].scaledDemand
 			x[m.sigma] = sign(r.step.axes[i].scaledDemand)
 		}
 	}

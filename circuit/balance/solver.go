@@ -278,7 +278,8 @@ func (s *Solver) iterate(p Problem, x []float64, form form, maxIt int, delta flo
 	}
 }
 
-// tol grows with the size of the unknowns: what rounding leaves of a residual does.
+// tol grows with the size of the unknowns, as what rounding leaves of a residual
+// does, but not without end: an unknown that runs away is no solution.
 func (s *Solver) tol(x []float64) float64 {
 	m := 0.0
 	for i, v := range x[:s.n] {
@@ -289,7 +290,7 @@ func (s *Solver) tol(x []float64) float64 {
 			m = v
 		}
 	}
-	return Tol * (1 + 0.1*m)
+	return Tol * (1 + 0.1*math.Min(m, 1e3))
 }
 
 // lineSearch moves x along s.dx: a full step, shortened as a whole where it

@@ -1,0 +1,203 @@
+package pdf
+
+import (
+	"bytes"
+	"errors"
+	"fmt"
+	"io"
+	"slices"
+	"time"
+
+	"github.com/jung-kurt/gofpdf"
+
+	"barlitre/audit"
+	"barlitre/audit/pen"
+	"barlitre/machines/units"
+)
+
+// Section is a part of the report that can be left out.
+type Section string
+
+// The sections, in the order of printing. Cautions always follow them.
+const (
+	Decision   Section = "Decision"
+	Basis      Section = "What the figures rest on"
+	Energy     Section = "Where the energy goes"
+	Duty       Section = "Duty and course over time"
+	Heat       Section = "Heat and cooler"
+	Money      Section = "Money"
+	Parameters Section = "Values and where they come from"
+	Findings   Section = "Findings"
+	Method     Section = "Method and certificate"
+)
+
+// Sections lists all sections in the order of printing; the slice is the caller's.
+func Sections() []Section {
+	return []Section{Decision, Basis, Energy, Duty, Heat, Money, Parameters, Findings, Method}
+}
+
+// Options of Write; only Date is needed.
+type Options struct {
+	System  units.System
+	Date    time.Time // of the report, printed and written into the document
+	Without []Section // left out
+
+	Customer, Site, Author string // in place of those of the audit file; "" keeps them
+}
+
+// Write writes the report of a solved audit to w. The error is that of w, or of
+// the PDF library; nothing is written in the second case.
+func Write(w io.Writer, s *audit.Solution, opt Options) error { return write(w, s, opt, true) }
+
+func write(w io.Writer, s *audit.Solution, opt Options, compress bool) error {
+	if s == nil || s.File == nil {
+		return errors.New("write report: there is no solved audit to print")
+	}
+	l := newLayout(s, opt)
+	l.choose()
+	doc := pen.NewPDF("P", opt.Date)
+	doc.SetCompression(compress)
+	doc.SetAutoPageBreak(false, 0)
+	doc.SetTitle(pen.Clean(l.title()), true)
+	doc.SetAuthor(pen.Clean(l.author), true)
+	doc.SetCreator("Barlitre", true)
+	l.print(&document{doc: doc})
+	var buf bytes.Buffer
+	if err := doc.Output(&buf); err != nil {
+		return fmt.Errorf("write report: %w", err)
+	}
+	if _, err := w.Write(buf.Bytes()); err != nil {
+		return fmt.Errorf("write report: %w", err)
+	}
+	return nil
+}
+
+// paper is what a sheet prints on: the document, or recorders that are measured.
+type paper interface {
+	page() pen.Pen // begins a page
+	mark(title string, level int, y float64)
+}
+
+// document is the PDF as paper.
+type document struct{ doc *gofpdf.Fpdf }
+
+func (d *document) page() pen.Pen {
+	d.doc.AddPage()
+	return pen.NewPDFPen(d.doc)
+}
+
+func (d *document) mark(title string, level int, y float64) {
+	d.doc.Bookmark(pen.Clean(title), level, y)
+}
+
+// recorders is paper that draws nothing and remembers every page.
+type recorders struct {
+	pages []*pen.Recorder
+	marks []string
+}
+
+func (r *recorders) page() pen.Pen {
+	r.pages = append(r.pages, pen.NewRecorder())
+	return r.pages[len(r.pages)-1]
+}
+
+func (r *recorders) mark(title string, _ int, _ float64) { r.marks = append(r.marks, title) }
+
+// layout is a report being printed.
+type layout struct {
+	*sheet
+	s       *audit.Solution
+	r       *audit.Report
+	without []Section
+	date    string
+
+	site, customer, author string
+
+	room   float64         // share of the usual space between things
+	total  int             // pages in all, as the last printing found them
+	starts map[Section]int // page on which a section starts, as above
+}
+
+func newLayout(s *audit.Solution, opt Options) *layout {
+	l := &layout{s: s, r: s.Report(opt.System), without: opt.Without, date: opt.Date.Format("2006-01-02"),
+		site: opt.Site, customer: opt.Customer, author: opt.Author, room: 1}
+	for own, file := range map[*string]string{&l.site: l.r.Site.Name, &l.customer: l.r.Site.Customer, &l.author: l.r.Site.Author} {
+		if *own == "" {
+			*own = file
+		}
+	}
+	return l
+}
+
+func (l *layout) title() string {
+	if l.r.Title == "" {
+		return "Energy audit"
+	}
+	return l.r.Title
+}
+
+// leastFill is the share of a page below which it counts as nearly empty.
+const leastFill = 0.2
+
+// choose lays the report out on trial: to learn its page numbers, and with less
+// space between things when a page would be nearly empty otherwise.
+func (l *layout) choose() {
+	best, chosen := -1, 1.0
+	for _, room := range []float64{1, 0.94, 0.88, 0.8, 0.7} {
+		l.room = room
+		if n := l.trial(); best < 0 || n < best {
+			best, chosen = n, room
+		}
+		if best == 0 {
+			break
+		}
+	}
+	l.room = chosen
+	l.trial()
+}
+
+// trial lays out on paper that is thrown away and returns the number of nearly empty pages.
+func (l *layout) trial() int {
+	l.print(&recorders{})
+	empty := 0
+	for _, end := range l.sheet.ends {
+		if end-top < leastFill*(bottom-top) {
+			empty++
+		}
+	}
+	return empty
+}
+
+// print lays the whole report out on paper.
+func (l *layout) print(to paper) {
+	l.sheet = newSheet(to, l.room, l.furniture(l.total))
+	starts := map[Section]int{}
+	l.firstPage()
+	for _, part := range []struct {
+		Section
+		draw func()
+	}{
+		{Decision, l.decisions}, {Basis, l.basis}, {Energy, l.energy}, {Duty, l.duties}, {Heat, l.heat},
+		{Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {Method, l.method},
+	} {
+		if slices.Contains(l.without, part.Section) {
+			continue
+		}
+		if part.Section != Decision {
+			l.heading(1, string(part.Section), 30)
+		}
+		starts[part.Section] = l.number
+		part.draw()
+	}
+	l.cautions()
+	l.finish()
+	l.total, l.starts = l.number, starts
+}
+
+// onPage says where a section starts, or "".
+func (l *layout) onPage(s Section) string {
+	if n := l.starts[s]; n > 0 {
+		return fmt.Sprintf(" (page %d)", n)
+	}
+	return ""
+}
