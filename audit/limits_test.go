@@ -73,7 +73,7 @@ func TestSupplyExhaustedByFlow(t *testing.T) {
 	f := parsed(t, c1(t, "displacement: 45 cm3/rev", "displacement: 20 cm3/rev"))
 	r := ran(t, f, f.Circuits[0].Circuit, f.Duties[0])
 	q := 29.50523 * litreMinute
-	near(t, "P [bar]", r.at(t, "P1.P.p", 1)/bar, 13.23225, 1e-6, 0)
+	near(t, "P [bar]", r.at(t, "P1.P.p", 1)/bar, 13.23225, 1e-5, 0)
 	near(t, "flow to A [L/min]", r.at(t, "C1.A.q", 1)/litreMinute, 29.50523, 1e-6, 0)
 	near(t, "speed [m/s]", r.at(t, "C1.v", 1), q/boreArea, 1e-6, 0)
 	near(t, "opening", r.at(t, "V1.u", 1), 1, 1e-9, 0)
@@ -84,9 +84,7 @@ func TestSupplyExhaustedByFlow(t *testing.T) {
 	if len(d.Shortfalls) != 1 || d.Shortfalls[0].Axis != "ram" || d.Shortfalls[0].LostStroke <= 0 {
 		t.Fatalf("shortfalls: %+v", d.Shortfalls)
 	}
-	if w := d.Shortfalls[0].WorstRatio; w > q/boreArea/0.15 {
-		t.Errorf("worst speed ratio %g, at 1 s it is %g", w, q/boreArea/0.15)
-	}
+	near(t, "worst speed ratio", d.Shortfalls[0].WorstRatio, q/boreArea/0.15, 1e-6, 0) // 5 kN and 0.15 m/s ask for most
 	says(t, solved(t, f).Circuits[0].Findings, circuit.Warns, "C1", "slower than the duty asks")
 }
 
@@ -126,7 +124,7 @@ func TestLoadDrivesBackwards(t *testing.T) {
 		R := 10 * bar / (100 * litreMinute)
 		P = (D*1480*math.Pi/30 + qA + 160*bar/R) / (1/R + slip*D)
 		pA := P + square(qA, 5*bar)
-		pB := -square(qB, 6*bar) // from the tank through filter and edge
+		pB := math.Max(-square(qB, 6*bar), -0.9*bar) // from the tank through filter and edge, until it tears
 		return 90e3 - 800 + 1500*v - pA*boreArea + pB*rodSideArea, P
 	}
 	low, high := -1.0, 0.0
@@ -225,7 +223,7 @@ func TestOverrunningLoadWithMakeUp(t *testing.T) {
 	}
 	near(t, "make-up and edge [L/min]", (q+r.at(t, "V1.P.q", 1))/litreMinute, boreArea*0.15/litreMinute, 1e-8, 0)
 	x := q / (60 * litreMinute)
-	near(t, "pA [bar]", r.at(t, "C1.A.p", 1)/bar, -(0.1 + 0.2*x*x), 1e-6, 0)
+	near(t, "pA [bar]", r.at(t, "C1.A.p", 1)/bar, -(0.1 + 0.2*x*x), 1e-4, 0)
 	s := solved(t, f)
 	sound(t, s.Circuits[0].Duties[0])
 	if said(s.Circuits[0].Findings, "", "runs empty") {
@@ -306,7 +304,7 @@ func TestRefusals(t *testing.T) {
 				"    C1: {kind: cylinder, axis: ram, hold: valve, bore: 80 mm, rod: 56 mm, friction: 800 N, viscous: 1500 N s/m}"),
 			[]string{"no actuator", "axis ram"}},
 		{"two followers",
-			changed(t, c1(t, "case_share: 0}", "case_share: 0, follows: ram}"), "pump_at_rest: keep", "pump_at_rest: keep"),
+			c1(t, "case_share: 0}", "case_share: 0, follows: ram}"),
 			[]string{"P1", "V1", "follow axis ram", "only one"}},
 		{"no pump_at_rest", without(t, c1(t), "  pump_at_rest: keep"), []string{"pump_at_rest", "Trial"}},
 	} {

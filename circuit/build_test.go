@@ -140,7 +140,7 @@ func (l *ledger) signal(t float64, name string) float64 {
 
 var trialOil = Conditions{Density: 870, Viscosity: 0.040}
 
-func run1(t testing.TB, c *Circuit, axes []duty.Axis, d *duty.Duty, cond Conditions, times ...float64) (*ledger, Certificate) {
+func run1(t *testing.T, c *Circuit, axes []duty.Axis, d *duty.Duty, cond Conditions, times ...float64) (*ledger, Certificate) {
 	t.Helper()
 	k, found := Compile(c, axes, d)
 	if k == nil {

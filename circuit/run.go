@@ -150,11 +150,11 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 	if warm {
 		copy(x, st.x)
 	}
-	r.state = State{travel: make([]float64, len(r.axes)), lastT: st.lastT, begun: true}
+	r.state = State{travel: make([]float64, len(r.axes)), speed: make([]float64, len(r.axes)), lastT: st.lastT, begun: st.begun}
 	copy(r.state.travel, st.travel)
+	copy(r.state.speed, st.speed)
 	good := append([]float64(nil), x...)
 	lost := 0
-	old := make([]float64, len(r.axes))
 	for k := range r.series.T {
 		if k&255 == 0 && ctx.Err() != nil {
 			return r.state, r.cert, ctx.Err()
@@ -175,7 +175,7 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 		} else if lost++; lost >= lostSteps {
 			return r.state, r.cert, fmt.Errorf("%w: %d time steps in a row, the last at %g s, worst at %s (%s)", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0].Where, r.cert.Unsolved[0].Residual)
 		}
-		r.report(k, !res.Solved(), old)
+		r.report(k, !res.Solved())
 		if !res.Solved() {
 			copy(x, good)
 		}
@@ -326,7 +326,7 @@ func (r *run) residual(i int) string {
 }
 
 // report books the step into the sample.
-func (r *run) report(k int, unbalanced bool, old []float64) {
+func (r *run) report(k int, unbalanced bool) {
 	b := &r.book
 	clear(b.pow)
 	clear(b.shaft)
@@ -350,14 +350,14 @@ func (r *run) report(k int, unbalanced bool, old []float64) {
 		b.sig[p.signal] = b.pa(p.node)
 	}
 	r.voids(b)
-	r.axesNow(k, unbalanced, old)
+	r.axesNow(k, unbalanced)
 }
 
 // voids finds what is missing at nodes that rest on the floor.
 func (r *run) voids(b *booking) {
 	for i, n := range r.nodes {
 		r.sample.Void[i] = 0
-		if n.slot < 0 || n.pilot || b.x[n.slot] > r.solver.Lo[n.slot] {
+		if n.slot < 0 || n.pilot || b.x[n.slot] > r.solver.Lo[n.slot]+1e-9 {
 			continue
 		}
 		q := b.m3s(math.Max(0, r.solver.Row(int(n.slot))))
@@ -366,12 +366,13 @@ func (r *run) voids(b *booking) {
 	}
 }
 
-func (r *run) axesNow(k int, unbalanced bool, old []float64) {
+func (r *run) axesNow(k int, unbalanced bool) {
 	s := &r.sample
 	dt := 0.0
-	if k > 0 {
-		dt = r.series.T[k] - r.series.T[k-1]
+	if r.state.begun { // a series that starts before the last one ended is another one
+		dt = math.Max(0, r.series.T[k]-r.state.lastT)
 	}
+	r.state.begun = true
 	s.T, s.Standing, s.Holding, s.Driving = r.series.T[k], r.step.standing, false, false
 	s.Stopped, s.Unbalanced = r.step.off(), unbalanced
 	for i := range r.axes {
@@ -382,16 +383,16 @@ func (r *run) axesNow(k int, unbalanced bool, old []float64) {
 		}
 		s.Axes[i] = now
 		s.Driving = s.Driving || now.Load*now.Speed < 0
-		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > holdShare*r.topLoad[i])
-		r.state.travel[i] += dt * (old[i] + now.Speed) / 2
-		old[i] = now.Speed
+		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > HoldShare*r.topLoad[i])
+		r.state.travel[i] += dt * (r.state.speed[i] + now.Speed) / 2
+		r.state.speed[i] = now.Speed
 	}
 	r.state.lastT = s.T
 }
 
-// holdShare is the share of the largest load of a duty above which a standing
+// HoldShare is the share of the largest load of a duty above which a standing
 // axis counts as holding, below it as idle (our choice, stated in the report).
-const holdShare = 0.1
+const HoldShare = 0.1
 
 // Nodes names the nodes, in the order of Sample.Void.
 func (c *Compiled) Nodes() []string {

@@ -109,6 +109,7 @@ type Unsolved struct {
 type State struct {
 	x      []float64
 	travel []float64 // m or rad, by axis
+	speed  []float64 // m/s or rad/s, by axis
 	lastT  float64
 	begun  bool
 }

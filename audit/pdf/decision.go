@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"barlitre/audit"
@@ -21,7 +22,7 @@ func (l *layout) fileName() string {
 }
 
 // firstPage opens the document with its title and whose machine it is.
-func (l *layout) firstPage() {
+func (l *layout) firstPage(starts map[Section]int) {
 	l.newPage()
 	l.lines(side, []string{"Energy audit of an oil-hydraulic machine"}, l.small())
 	l.y += 0.5
@@ -41,7 +42,25 @@ func (l *layout) firstPage() {
 	}
 	l.y += 1.5
 	l.rule(side, side+fullW, l.y, l.pal.Edge)
-	l.y += 2.5 * l.sheet.room
+	l.y += 1
+	l.contents(starts)
+	l.y += 1.5 * l.sheet.room
+}
+
+// contents names the page of each section. Before they are known it leaves as much room.
+func (l *layout) contents(starts map[Section]int) {
+	var parts []string
+	for _, s := range append(Sections(), cautionPages) {
+		n, ok := starts[s]
+		switch {
+		case slices.Contains(l.without, s):
+			continue
+		case !ok:
+			n = 10
+		}
+		parts = append(parts, fmt.Sprintf("%s\u00a0%d", strings.ReplaceAll(string(s), " ", "\u00a0"), n))
+	}
+	l.lines(side, l.small().wrap("Pages: "+strings.Join(parts, " · "), fullW), l.small())
 }
 
 // decisions prints a page for each proposal, or what there is without one.
@@ -50,7 +69,7 @@ func (l *layout) decisions() {
 		if i > 0 {
 			l.newPage()
 		}
-		l.decision(&l.r.Decisions[i], l.s.Comparisons[i])
+		l.fitted(func() { l.decision(&l.r.Decisions[i], l.s.Comparisons[i]) })
 	}
 	if len(l.r.Decisions) == 0 {
 		l.heading(1, "No proposal to decide on", 20)
@@ -60,6 +79,29 @@ func (l *layout) decisions() {
 			l.stops(c)
 		}
 	}
+}
+
+// fitted draws on the rest of the page, with less room and smaller figures if that
+// is what it takes; what is too much for a page in any case goes on over it.
+func (l *layout) fitted(draw func()) {
+	page := l.sheet
+	for _, try := range []struct{ room, scale float64 }{{1, figureScale}, {0.85, 0.21}, {0.7, 0.195}, {0.5, figureLeast}, {0.4, 0.165}} {
+		trial := *page
+		trial.to, trial.p = &recorders{}, pen.NewRecorder()
+		trial.room, trial.scale = try.room*page.room, try.scale
+		l.sheet = &trial
+		draw()
+		l.sheet = page
+		if trial.number > page.number {
+			continue
+		}
+		room := page.room
+		page.room, page.scale = trial.room, trial.scale
+		draw()
+		page.room, page.scale = room, figureScale
+		return
+	}
+	draw()
 }
 
 func (l *layout) decision(d *audit.Decision, c *audit.Comparison) {
@@ -75,9 +117,9 @@ func (l *layout) decision(d *audit.Decision, c *audit.Comparison) {
 	l.against(d)
 	st := style{size: 2.6, c: l.pal.Ink}
 	if len(l.r.Assumptions) > 0 {
-		l.lead("Assumed.", l.r.Assumptions[0]+" This and all else that the figures rest on: “"+string(Basis)+"”"+l.onPage(Basis)+".", st)
+		l.lead(side, "Assumed.", l.r.Assumptions[0]+" All else: see “"+string(Basis)+"”.", st)
 	}
-	l.lead("Left out.", strings.Join(l.r.Exclusions, " "), st)
+	l.lead(side, "Left out.", strings.Join(l.r.Exclusions, " "), st)
 	l.signatures()
 }
 
@@ -217,7 +259,7 @@ func (l *layout) against(d *audit.Decision) {
 		}
 	}
 	if d.Published.Text != "" {
-		l.lead("Published.", strings.TrimSpace(d.Published.Text+" "+d.Published.Explanation), style{size: 2.6, c: l.pal.Ink})
+		l.lead(side, "Published.", strings.TrimSpace(d.Published.Text+" "+d.Published.Explanation), style{size: 2.6, c: l.pal.Ink})
 	}
 }
 

@@ -6,6 +6,7 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/figures"
+	"barlitre/audit/pen"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -89,8 +90,12 @@ func (l *layout) certificate() {
 // cautions prints the page on harm and limits of use; it stands for itself and
 // cannot be left out.
 func (l *layout) cautions() {
-	l.newPage()
-	l.heading(1, "Cautions and limits of use", 30)
+	if !l.fresh() {
+		l.newPage()
+	}
+	l.accent = l.pal.Danger
+	l.starts[cautionPages] = l.number
+	l.heading(1, string(cautionPages), 30)
 	last := ""
 	for _, c := range l.r.Cautions {
 		if c.Circuit != last && c.Circuit != "" {
@@ -101,10 +106,9 @@ func (l *layout) cautions() {
 		if c.Block != "" {
 			topic = c.Block + ": " + topic
 		}
-		l.caution(topic, c.Text)
+		st := l.body()
+		l.need(2 * st.line())
+		l.put(side, l.y+st.base(), "▲", style{st.size, false, l.pal.Danger}, pen.Left)
+		l.lead(side+4.5, topic, c.Text, st)
 	}
-}
-
-func (l *layout) caution(topic, text string) {
-	l.lead("▲ "+topic, text, l.body())
 }

@@ -31,6 +31,9 @@ const (
 	Method     Section = "Method and certificate"
 )
 
+// cautionPages is the section that cannot be left out.
+const cautionPages Section = "Cautions and limits of use"
+
 // Sections lists all sections in the order of printing; the slice is the caller's.
 func Sections() []Section {
 	return []Section{Decision, Basis, Energy, Duty, Heat, Money, Parameters, Findings, Method}
@@ -115,7 +118,7 @@ type layout struct {
 
 	room   float64         // share of the usual space between things
 	total  int             // pages in all, as the last printing found them
-	starts map[Section]int // page on which a section starts, as above
+	starts map[Section]int // page on which a section starts
 }
 
 func newLayout(s *audit.Solution, opt Options) *layout {
@@ -171,8 +174,9 @@ func (l *layout) trial() int {
 // print lays the whole report out on paper.
 func (l *layout) print(to paper) {
 	l.sheet = newSheet(to, l.room, l.furniture(l.total))
-	starts := map[Section]int{}
-	l.firstPage()
+	known := l.starts
+	l.starts = map[Section]int{}
+	l.firstPage(known)
 	for _, part := range []struct {
 		Section
 		draw func()
@@ -186,18 +190,13 @@ func (l *layout) print(to paper) {
 		if part.Section != Decision {
 			l.heading(1, string(part.Section), 30)
 		}
-		starts[part.Section] = l.number
+		l.starts[part.Section] = l.number
 		part.draw()
+		if part.Section == Decision && len(l.r.Decisions) > 0 {
+			l.newPage() // what is signed stands by itself
+		}
 	}
 	l.cautions()
 	l.finish()
-	l.total, l.starts = l.number, starts
-}
-
-// onPage says where a section starts, or "".
-func (l *layout) onPage(s Section) string {
-	if n := l.starts[s]; n > 0 {
-		return fmt.Sprintf(" (page %d)", n)
-	}
-	return ""
+	l.total = l.number
 }

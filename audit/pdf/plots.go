@@ -19,13 +19,14 @@ func (l *layout) duties() {
 		l.para("The file holds no duty.", l.body())
 	}
 	for i, d := range l.s.File.Duties {
-		l.heading(2, "Duty: "+d.Name, 60)
+		asked := l.asked(i)
+		l.heading(2, "Duty: "+d.Name, 10+l.plotHeight(asked, d))
 		l.para(l.dutyText(i), l.body())
-		l.plot(l.asked(i), phases(d))
+		l.plot(asked, d)
 		runs := l.courses(i)
 		for _, c := range runs {
-			l.heading(3, c.name, 40)
-			l.plot(c.lanes, phases(d))
+			l.heading(3, c.name, l.plotHeight(c.lanes, d))
+			l.plot(c.lanes, d)
 		}
 		if len(runs) > 0 {
 			text := "Power, heat and pressure have the same scales in all circuits. Pressures: the highest three that run differently."
@@ -69,13 +70,23 @@ func phases(d *duty.Duty) []figures.Phase {
 // lanesAbreast is how many lanes a plot has at most before it is cut in two.
 const lanesAbreast = 8
 
-func (l *layout) plot(lanes []figures.Lane, ph []figures.Phase) {
+// first returns the plot of as many lanes as one plot takes.
+func (l *layout) first(lanes []figures.Lane, d *duty.Duty) figures.Plot {
+	return figures.Plot{Lanes: lanes[:min(len(lanes), lanesAbreast)], Phases: phases(d), Axis: "time",
+		AxisUnit: units.Preferred(units.Time, l.r.System).Label()}
+}
+
+// plotHeight returns the least height of the first plot of lanes on paper.
+func (l *layout) plotHeight(lanes []figures.Lane, d *duty.Duty) float64 {
+	return 2*l.sheet.room + figureLeast*l.first(lanes, d).Height(fullW/figureLeast)
+}
+
+func (l *layout) plot(lanes []figures.Lane, d *duty.Duty) {
 	for len(lanes) > 0 {
-		n := min(len(lanes), lanesAbreast)
-		f := figures.Plot{Lanes: lanes[:n], Phases: ph, Axis: "time", AxisUnit: units.Preferred(units.Time, l.r.System).Label()}
+		f := l.first(lanes, d)
 		l.figure(f.Height, func(p pen.Pen, w, h float64) { f.Draw(p, w, h, l.pal) })
 		l.y += 2 * l.sheet.room
-		lanes = lanes[n:]
+		lanes = lanes[len(f.Lanes):]
 	}
 }
 

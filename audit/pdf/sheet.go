@@ -39,11 +39,13 @@ type sheet struct {
 	number int     // of the page
 	ends   []float64
 	room   float64 // share of the usual space between things
+	scale  float64 // of figures, mm a figure unit
+	accent color.NRGBA
 	furniture
 }
 
 func newSheet(to paper, room float64, f furniture) *sheet {
-	return &sheet{to: to, pal: figures.Light, room: room, furniture: f}
+	return &sheet{to: to, pal: figures.Light, room: room, scale: figureScale, accent: figures.Light.Gain, furniture: f}
 }
 
 // newPage ends the page and begins the next.
@@ -121,7 +123,7 @@ const (
 // units. It is made a little smaller where that saves a page break.
 func (s *sheet) figure(h func(w float64) float64, draw func(p pen.Pen, w, h float64)) {
 	s.gap(2)
-	k := figureScale
+	k := s.scale
 	high := k * h(fullW/k)
 	if left := bottom - s.y; high > left {
 		small := figureLeast * h(fullW/figureLeast)

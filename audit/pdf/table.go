@@ -1,7 +1,7 @@
 package pdf
 
 import (
-	"slices"
+	"math"
 	"strings"
 	"unicode/utf8"
 
@@ -73,6 +73,7 @@ type setTable struct {
 	x, w  []float64
 	heads [][]string
 	last  string // group that the rows belong to
+	first int    // row that stands first on the page
 }
 
 // table prints a table; one without rows prints its note alone.
@@ -148,6 +149,9 @@ func (k *setTable) place() {
 			if r.sign != 0 && i == 0 {
 				lead = signRoom
 			}
+			if c.right {
+				least[i] = max(least[i], lead+st.width(pen.Clean(r.cells[i]))) // a number stays in one piece
+			}
 			least[i] = max(least[i], lead+st.longestWord(r.cells[i]))
 			for _, line := range strings.Split(r.cells[i], "\n") {
 				most[i] = max(most[i], lead+st.width(pen.Clean(line)))
@@ -167,24 +171,39 @@ func (k *setTable) place() {
 	}
 }
 
-// share gives widths between least and most that add up to all; above most where
-// there is room to spare, below least where there is not enough.
+// share gives widths that add up to all. Where there is room, each is its most and
+// an even part of what is to spare. Else all are one level, none above its most or
+// below its least: what is narrow stays whole and the long texts wrap. Where even
+// the least are too wide, all shrink.
 func share(least, most []float64, all float64) []float64 {
-	lo, hi := 0.0, 0.0
-	for i := range least {
-		lo, hi = lo+least[i], hi+most[i]
+	at := func(level float64) (w []float64, sum float64) {
+		for i := range least {
+			w = append(w, max(least[i], min(most[i], level)))
+			sum += w[i]
+		}
+		return w, sum
 	}
-	w := slices.Clone(least)
-	for i := range w {
-		switch {
-		case hi <= all:
-			w[i] = most[i] + (all-hi)/float64(len(w))
-		case lo <= all:
-			w[i] += (all - lo) * (most[i] - least[i]) / (hi - lo)
-		default:
-			w[i] *= all / lo
+	if w, sum := at(0); sum > all {
+		for i := range w {
+			w[i] *= all / sum
+		}
+		return w
+	}
+	if w, sum := at(math.Inf(1)); sum <= all {
+		for i := range w {
+			w[i] += (all - sum) / float64(len(w))
+		}
+		return w
+	}
+	lo, hi := 0.0, all
+	for range 50 {
+		if _, sum := at((lo + hi) / 2); sum > all {
+			hi = (lo + hi) / 2
+		} else {
+			lo = (lo + hi) / 2
 		}
 	}
+	w, _ := at(lo)
 	return w
 }
 

@@ -2,26 +2,30 @@ package pdf
 
 import "barlitre/audit/pen"
 
+// together is how many rows at least go over to a page.
+const together = 4
+
 // breakBefore begins a page when row i does not fit, or when what must stay with
-// it does not: a group its first row, the last row but one the last.
+// it does not: a group its first row, the last few rows each other.
 func (k *setTable) breakBefore(i int) {
 	s := k.s
 	h := k.height(i)
 	if k.rows[i].group && i+1 < len(k.rows) {
 		h += k.height(i + 1)
 	}
-	switch left := len(k.rows) - i; {
-	case left == 1:
-		h += k.noteHeight()
-	case left == 2 && i > 0:
-		h += k.height(i+1) + k.noteHeight()
+	if left := len(k.rows) - i; left == 1 || left <= together && i-k.first >= together {
+		h = k.noteHeight()
+		for n := i; n < len(k.rows); n++ {
+			h += k.height(n)
+		}
 	}
-	if s.y+h <= bottom || s.y <= top+k.headHeight() {
+	if s.y+h <= bottom || s.y <= top+k.headHeight()+0.01 {
 		return
 	}
 	if k.height(i) > bottom-top-k.headHeight() && bottom-s.y > 40 {
 		return // higher than a page: it begins here and goes on over the page
 	}
+	k.first = i
 	k.again(!k.rows[i].group)
 }
 

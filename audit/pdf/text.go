@@ -29,9 +29,6 @@ func (st style) base() float64 { return 0.98 * st.size }
 
 func (s *sheet) body() style  { return style{size: textSize, c: s.pal.Ink} }
 func (s *sheet) small() style { return style{size: smallSize, c: s.pal.Secondary} }
-func (s *sheet) strong() style {
-	return style{size: textSize, bold: true, c: s.pal.Ink}
-}
 
 // wrap breaks a text into lines no wider than width. It breaks at spaces and at
 // line feeds; a word that is wider is cut after a sign that joins words, or
@@ -48,7 +45,7 @@ func (st style) wrap(text string, width float64) []string {
 func (st style) wrapPart(text string, width float64) []string {
 	var out []string
 	line := ""
-	for _, word := range strings.FieldsFunc(text, func(r rune) bool { return r == ' ' }) {
+	for _, word := range words(text) {
 		joined := word
 		if line != "" {
 			joined = line + " " + word
@@ -67,6 +64,11 @@ func (st style) wrapPart(text string, width float64) []string {
 		}
 	}
 	return append(out, line)
+}
+
+// words splits at plain spaces only: a narrow space joins a number to its unit.
+func words(text string) []string {
+	return strings.FieldsFunc(text, func(r rune) bool { return r == ' ' })
 }
 
 func (st style) width(text string) float64 { return pen.TextWidth(text, st.size, st.bold) }
@@ -93,7 +95,7 @@ func (st style) cut(word string, width float64) int {
 // longestWord returns the width of the widest part that wrap keeps together.
 func (st style) longestWord(text string) float64 {
 	most := 0.0
-	for _, w := range strings.Fields(pen.Clean(strings.ReplaceAll(text, "\n", " "))) {
+	for _, w := range words(pen.Clean(text)) { // a line feed is cleaned to a space
 		most = max(most, st.width(w))
 	}
 	return most
@@ -119,23 +121,23 @@ func (s *sheet) para(text string, st style) {
 	s.y += 1.2 * s.room
 }
 
-// lead writes a paragraph that begins with a bold word.
-func (s *sheet) lead(word, text string, st style) {
+// lead writes a paragraph at x that begins with bold words.
+func (s *sheet) lead(x float64, word, text string, st style) {
 	bold := st
 	bold.bold = true
 	word = pen.Clean(word)
-	indent := bold.width(word + " ")
-	if indent > fullW/2 {
-		s.lines(side, bold.wrap(word, fullW), bold)
-		s.para(text, st)
+	w, indent := side+fullW-x, bold.width(word+" ")
+	if indent > w/2 {
+		s.lines(x, append(bold.wrap(word, w), st.wrap(text, w)...), st)
+		s.y += 1.2 * s.room
 		return
 	}
-	// Spaces as wide as the bold word keep its place on the first line.
+	// Spaces as wide as the bold words keep their place on the first line.
 	blank := strings.Repeat("\u00a0", int(indent/st.width("\u00a0")+0.999))
-	lines := st.wrap(blank+text, fullW)
+	lines := st.wrap(blank+text, w)
 	s.need(st.line() * float64(min(len(lines), 2)))
-	s.put(side, s.y+st.base(), word, bold, pen.Left)
-	s.lines(side, lines, st)
+	s.put(x, s.y+st.base(), word, bold, pen.Left)
+	s.lines(x, lines, st)
 	s.y += 1.2 * s.room
 }
 
@@ -169,7 +171,7 @@ func (s *sheet) heading(level int, text string, follow float64) {
 	s.lines(side, lines, st)
 	if level == 1 {
 		s.y += 0.6
-		s.fill(side, s.y, 14, 0.7, s.pal.Gain)
+		s.fill(side, s.y, 14, 0.7, s.accent)
 	}
 	s.y += after * s.room
 }

@@ -96,6 +96,26 @@ func (d *Duty) Series(axes []Axis, inertia bool) *Series {
 	return s
 }
 
+// Part returns time steps from up to but not with to; it shares the columns of s.
+func (s *Series) Part(from, to int) *Series {
+	cut := func(v []float64) []float64 {
+		if v == nil {
+			return nil
+		}
+		return v[from:to]
+	}
+	p := &Series{T: s.T[from:to], Repeats: s.Repeats, Duty: s.Duty, Commands: map[string][]float64{}}
+	for _, a := range s.Axes {
+		a.Speed, a.Accel, a.Load, a.Command = cut(a.Speed), cut(a.Accel), cut(a.Load), cut(a.Command)
+		a.Standing = a.Standing[from:to]
+		p.Axes = append(p.Axes, a)
+	}
+	for id, v := range s.Commands {
+		p.Commands[id] = v[from:to]
+	}
+	return p
+}
+
 // column is one track over the rows.
 type column struct{ t, v []float64 }
 
