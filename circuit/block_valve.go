@@ -39,16 +39,14 @@ var valveKind = &Kind{
 	Equations: []Equation{{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open", "orifice law from the nominal point of the edge"}},
 	Rating:    "rating",
 	Symbol: func(b *Block) string {
-		s := "dcv_4_3_"
-		if c := b.Word("centre"); c != "" {
-			s += c
-		} else {
-			s += "closed"
+		centre := b.Word("centre")
+		if centre == "" {
+			centre = "closed"
 		}
-		if b.Word("directs") == "" {
-			s += "_prop"
+		if b.Word("directs") != "" {
+			return "dcv_4_3_" + centre
 		}
-		return s
+		return "dcv_4_3_prop_" + centre
 	},
 	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 		if follows(b) != "" && b.Word("directs") != "" {

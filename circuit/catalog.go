@@ -91,7 +91,7 @@ type Kind struct {
 	Losses    []LossKind
 	Equations []Equation
 	Rating    string // key of the parameter that limits its pressure, if any
-	// Symbol returns the name of its drawing symbol.
+	// Symbol returns the name of its drawing symbol; see also SymbolOf.
 	Symbol func(b *Block) string
 	// check adds what only this kind can say of a block.
 	check func(k *Kind, b *Block, bad func(level Level, param, format string, args ...any))
@@ -148,6 +148,28 @@ var catalog []*Kind
 
 // Catalog returns all kinds of block.
 func Catalog() []*Kind { return catalog }
+
+// SymbolOf returns the drawing symbol of a block in its circuit: a fixed pump on a
+// motor that turns both ways delivers both ways.
+func SymbolOf(c *Circuit, b *Block) string {
+	k := KindNamed(b.Kind)
+	if k == nil {
+		return ""
+	}
+	name := k.Symbol(b)
+	if name != "pump_fixed_1" {
+		return name
+	}
+	_, of := netsOf(c)
+	if n := of[PortRef{b.ID, "shaft"}]; n != nil {
+		for _, p := range n.ports {
+			if o := c.Block(p.Block); o.Kind == kindElectricMotor && o.Word("both_directions") == "yes" {
+				return "pump_fixed_2"
+			}
+		}
+	}
+	return name
+}
 
 // KindNamed returns a kind by its name in files, or nil.
 func KindNamed(name string) *Kind {

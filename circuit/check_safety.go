@@ -42,6 +42,7 @@ func (k *checker) relieved(b *Block, port, name string) {
 func (k *checker) hasRelief(start *net) bool {
 	open := map[string]map[string][]string{
 		kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}}, kindCheck: {"in": {"out"}},
+		kindPilotCheck: {"V": {"C"}}, kindCounterbalance: {"V": {"C"}},
 	}
 	seen := map[*net]bool{start: true}
 	queue := []*net{start}

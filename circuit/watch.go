@@ -38,6 +38,8 @@ type axisWatch struct {
 	at               float64
 	backwards, tBack float64 // worst speed against the demand
 	falls, tFall     float64 // worst speed while it should stand
+	over, tOver      float64 // highest speed above the demand
+	overRatio        float64
 	was              bool
 	lastLost         float64
 	travel, lo, hi   float64
@@ -201,15 +203,20 @@ func (a *axisWatch) take(now AxisNow, given duty.Given, top, t, dt float64) {
 	if given == duty.MotionLoad {
 		switch {
 		case now.Standing:
-			if v := math.Abs(now.Speed); v > 1e-3*top && v > math.Abs(a.falls) {
+			// Below 1e-6 m/s or rad/s nobody sees it move: a millimetre in a quarter of an hour.
+			if v := math.Abs(now.Speed); v > math.Max(1e-3*top, 1e-6) && v > math.Abs(a.falls) {
 				a.falls, a.tFall = now.Speed, t
 			}
 		default:
-			lost = math.Abs(now.Demand - now.Speed)
-			if lost <= 1e-3*math.Abs(now.Demand) {
-				lost = 0
-			} else if r := now.Speed / now.Demand; r < a.ratio {
-				a.ratio, a.at = r, t
+			r := now.Speed / now.Demand
+			switch {
+			case r < 1-1e-3:
+				lost = math.Abs(now.Demand - now.Speed)
+				if r < a.ratio {
+					a.ratio, a.at = r, t
+				}
+			case r > 1+1e-3 && math.Abs(now.Speed) > math.Abs(a.over):
+				a.over, a.tOver, a.overRatio = now.Speed, t, r
 			}
 			if now.Speed*now.Demand < 0 && math.Abs(now.Speed) > math.Abs(a.backwards) {
 				a.backwards, a.tBack = now.Speed, t
@@ -337,12 +344,23 @@ func (w *Watch) Findings() []Finding {
 			f.add(Warns, nil, "", v.t, "%s runs empty: %s are missing at %s. Feed it through a make-up check valve, or hold the load back with a counterbalance valve", w.c.nodes[i].name, show(v.worst, units.Flow), clock(v.t))
 		}
 	}
-	if w.starts > 0 && w.span > 0 {
+	if w.starts > 0 && w.span > 0 && w.onLine() {
 		if perHour := float64(w.starts) * 3600 / w.span; perHour > 10 {
 			f.add(Warns, nil, "pump_at_rest", 0, "the motors are started %s times an hour; a direct-on-line motor usually stands 6 to 15 (common practice, ask its maker), use a converter or unload instead", units.Number(perHour, 3))
 		}
 	}
 	return f.list
+}
+
+// onLine reports whether a motor hangs on the mains without a converter.
+func (w *Watch) onLine() bool {
+	_, of := netsOf(w.c.circuit)
+	for _, m := range w.motors {
+		if n := of[PortRef{m.b.ID, "E"}]; n == nil || len(n.ports) < 2 {
+			return true
+		}
+	}
+	return false
 }
 
 type findings struct {
@@ -429,6 +447,9 @@ func (w *Watch) motions(f *findings) {
 		}
 		if a.short > 0 {
 			f.add(Warns, b, "", a.at, "slower than the duty asks for %s a cycle, at worst %s of the speed at %s; %s of travel are lost", clock(a.short), units.Format(a.ratio, units.Percent, 3), clock(a.at), show(a.lost, way))
+		}
+		if a.over != 0 {
+			f.add(Caution, b, "", a.tOver, "it runs ahead of the duty, at %s it moves at %s, %s times what is asked: leakage or the load moves it and the control cannot hold it back", clock(a.tOver), show(math.Abs(a.over), speed), units.Number(a.overRatio, 3))
 		}
 		if a.backwards != 0 {
 			f.add(Caution, b, "", a.tBack, "the load drives it backwards at up to %s; fit a load check", show(math.Abs(a.backwards), speed))

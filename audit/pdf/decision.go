@@ -266,7 +266,7 @@ func (l *layout) against(d *audit.Decision) {
 // marked writes a paragraph behind a sign.
 func (l *layout) marked(sign rune, role figures.Role, text string, st style) {
 	lines := st.wrap(text, fullW-5)
-	l.need(st.line() * float64(min(2, len(lines))))
+	l.need(st.begin(len(lines)))
 	l.put(side, l.y+st.base(), string(sign), style{st.size, false, l.pal.Color(role)}, pen.Left)
 	l.lines(side+5, lines, st)
 	l.y += 0.8 * l.sheet.room

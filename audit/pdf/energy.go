@@ -17,7 +17,7 @@ func (l *layout) energy() {
 		l.para("No circuit could be solved, so there is no energy to show; see the findings.", l.body())
 		return
 	}
-	l.lossSteps()
+	l.drawSteps()
 	for i := range l.r.Decisions {
 		if t := fromReport(l.r.Decisions[i].Source); len(t.rows) > 0 {
 			t.title += ": " + l.r.Decisions[i].Proposal
@@ -127,9 +127,9 @@ type stepBasis struct {
 	losses                                       []audit.LossRow
 }
 
-// lossSteps draws the circuits on one scale: over the year, or, where no duty has
+// lossSteps returns the circuits on one scale: over the year, or, where no duty has
 // hours, over one cycle of each duty.
-func (l *layout) lossSteps() {
+func (l *layout) lossSteps() []figures.LossSteps {
 	kWh, _ := units.ParseUnit("kWh", units.Energy)
 	var year []figures.StepsCircuit
 	for _, c := range l.s.Circuits {
@@ -139,9 +139,9 @@ func (l *layout) lossSteps() {
 		}
 	}
 	if len(year) > 0 {
-		l.steps(year, kWh)
-		return
+		return abreastSteps(year, kWh)
 	}
+	var out []figures.LossSteps
 	unit := units.Preferred(units.Energy, l.r.System)
 	for i, d := range l.s.File.Duties {
 		var cycle []figures.StepsCircuit
@@ -153,9 +153,10 @@ func (l *layout) lossSteps() {
 			}
 		}
 		if len(cycle) > 0 {
-			l.steps(cycle, unit)
+			out = append(out, abreastSteps(cycle, unit)...)
 		}
 	}
+	return out
 }
 
 // smallStep is the share of what comes in below which losses are drawn as one step.
@@ -220,26 +221,33 @@ func gathered(steps []figures.Step, name string) []figures.Step {
 	return []figures.Step{sum}
 }
 
-// steps draws circuits on one scale; where they are too many for a page, the first
-// is repeated beside the others, so that each figure holds the comparison.
-func (l *layout) steps(all []figures.StepsCircuit, u units.Unit) {
-	first := []figures.StepsCircuit{all[0]}
+// abreastSteps puts circuits on one scale; where they are too many for a page, the
+// first is repeated beside the others, so that each figure holds the comparison.
+func abreastSteps(all []figures.StepsCircuit, u units.Unit) []figures.LossSteps {
+	var out []figures.LossSteps
 	rest := all[1:]
 	for {
 		n := len(rest)
 		var f figures.LossSteps
 		for ; n >= 0; n-- {
-			f = figures.LossSteps{Circuits: append(first[:1:1], rest[:n]...), Unit: u.Label(),
+			f = figures.LossSteps{Circuits: append(all[:1:1], rest[:n]...), Unit: u.Label(),
 				Format: func(v float64) string { return units.Number(v, 4) }}
 			if n <= 1 || figureScale*f.Height() < bottom-top-25 {
 				break
 			}
 		}
-		l.figure(func(float64) float64 { return f.Height() }, func(p pen.Pen, w, h float64) { f.Draw(p, w, h, l.pal) })
+		out = append(out, f)
 		if rest = rest[n:]; len(rest) == 0 {
-			break
+			return out
 		}
 	}
-	l.y += 1
-	l.para("All bars have one scale. A loss below "+units.Format(smallStep, units.Percent, 1)+" of what comes in is part of “other losses”; the tables hold each.", l.small())
+}
+
+func (l *layout) drawSteps() {
+	for _, f := range l.lossSteps() {
+		l.figure(func(float64) float64 { return f.Height() }, func(p pen.Pen, w, h float64) { f.Draw(p, w, h, l.pal) })
+		l.y += 2 * l.sheet.room
+	}
+	l.para("All bars of a figure have one scale. A loss below "+units.Format(smallStep, units.Percent, 1)+
+		" of what comes in is part of “other losses”; the tables hold each.", l.small())
 }

@@ -107,7 +107,7 @@ func (l *layout) cautions() {
 			topic = c.Block + ": " + topic
 		}
 		st := l.body()
-		l.need(2 * st.line())
+		l.need(3 * st.line())
 		l.put(side, l.y+st.base(), "▲", style{st.size, false, l.pal.Danger}, pen.Left)
 		l.lead(side+4.5, topic, c.Text, st)
 	}

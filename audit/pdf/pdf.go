@@ -188,7 +188,7 @@ func (l *layout) print(to paper) {
 			continue
 		}
 		if part.Section != Decision {
-			l.heading(1, string(part.Section), 30)
+			l.heading(1, string(part.Section), l.follow(part.Section))
 		}
 		l.starts[part.Section] = l.number
 		part.draw()
@@ -199,4 +199,15 @@ func (l *layout) print(to paper) {
 	l.cautions()
 	l.finish()
 	l.total = l.number
+}
+
+// follow returns the height of what stays with the heading of a section.
+func (l *layout) follow(s Section) float64 {
+	switch steps := l.lossSteps(); {
+	case s == Energy && len(steps) > 0:
+		return 2 + figureLeast*steps[0].Height()
+	case s == Duty && len(l.s.File.Duties) > 0:
+		return 25 + l.plotHeight(l.asked(0), l.s.File.Duties[0])
+	}
+	return 30
 }

@@ -24,16 +24,16 @@ func (l *layout) duties() {
 		l.para(l.dutyText(i), l.body())
 		l.plot(asked, d)
 		runs := l.courses(i)
-		for _, c := range runs {
-			l.heading(3, c.name, l.plotHeight(c.lanes, d))
-			l.plot(c.lanes, d)
-		}
 		if len(runs) > 0 {
-			text := "Power, heat and pressure have the same scales in all circuits. Pressures: the highest three that run differently."
+			text := "In the courses that follow, power, heat and pressure have the same scales for all circuits. Pressures: the highest three that run differently."
 			if slices.ContainsFunc(runs, func(c course) bool { return c.thinned }) {
 				text += " Long courses are drawn from the lowest and highest value of each stretch."
 			}
 			l.para(text, l.small())
+		}
+		for _, c := range runs {
+			l.heading(3, c.name, l.plotHeight(c.lanes, d))
+			l.plot(c.lanes, d)
 		}
 	}
 }

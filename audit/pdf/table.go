@@ -172,13 +172,13 @@ func (k *setTable) place() {
 }
 
 // share gives widths that add up to all. Where there is room, each is its most and
-// an even part of what is to spare. Else all are one level, none above its most or
-// below its least: what is narrow stays whole and the long texts wrap. Where even
-// the least are too wide, all shrink.
+// an even part of what is to spare. Else they grow with the root of their most, none
+// above it or below its least: what is narrow stays whole and the long texts wrap.
+// Where even the least are too wide, all shrink.
 func share(least, most []float64, all float64) []float64 {
 	at := func(level float64) (w []float64, sum float64) {
 		for i := range least {
-			w = append(w, max(least[i], min(most[i], level)))
+			w = append(w, max(least[i], min(most[i], level*math.Sqrt(most[i]))))
 			sum += w[i]
 		}
 		return w, sum

@@ -101,15 +101,26 @@ func (st style) longestWord(text string) float64 {
 	return most
 }
 
+// begin returns the height of the lines that stay together at the start of n.
+func (st style) begin(n int) float64 {
+	if n > 3 {
+		n = 2
+	}
+	return float64(n) * st.line()
+}
+
 // lines draws lines at x from s.y down, over pages where needed; two lines at
 // least stay together.
 func (s *sheet) lines(x float64, lines []string, st style) {
 	for i, t := range lines {
-		h := st.line()
-		if i == 0 && len(lines) > 1 || i == len(lines)-2 {
-			h *= 2
+		switch i {
+		case 0:
+			s.need(st.begin(len(lines)))
+		case len(lines) - 2:
+			s.need(2 * st.line())
+		default:
+			s.need(st.line())
 		}
-		s.need(h)
 		s.put(x, s.y+st.base(), t, st, pen.Left)
 		s.y += st.line()
 	}
@@ -135,7 +146,7 @@ func (s *sheet) lead(x float64, word, text string, st style) {
 	// Spaces as wide as the bold words keep their place on the first line.
 	blank := strings.Repeat("\u00a0", int(indent/st.width("\u00a0")+0.999))
 	lines := st.wrap(blank+text, w)
-	s.need(st.line() * float64(min(len(lines), 2)))
+	s.need(st.begin(len(lines)))
 	s.put(x, s.y+st.base(), word, bold, pen.Left)
 	s.lines(x, lines, st)
 	s.y += 1.2 * s.room
@@ -145,7 +156,7 @@ func (s *sheet) lead(x float64, word, text string, st style) {
 func (s *sheet) bullets(items []string, st style) {
 	for _, t := range items {
 		lines := st.wrap(t, fullW-4)
-		s.need(st.line() * float64(min(len(lines), 2)))
+		s.need(st.begin(len(lines)))
 		s.p.Circle(pen.Pt{X: side + 1.1, Y: s.y + st.base() - 0.36*st.size}, 0.45, s.pal.Secondary, pen.Stroke{})
 		s.lines(side+4, lines, st)
 		s.y += 0.7 * s.room
