@@ -65,13 +65,15 @@ func solved(t testing.TB, f *audit.File) *audit.Solution {
 	return s
 }
 
-// sound fails when a run has unbalanced steps or its energies do not close.
+// sound fails when a run has unbalanced steps or its energies do not close. What may lack
+// is what holds ideal parts apart in the balance, 1e-10 of 100 bar at full flow: up to
+// 1e-8 of the supply in a circuit whose highest pressure is 1 bar.
 func sound(t testing.TB, d *audit.DutyRun) {
 	t.Helper()
 	if n := d.Certificate.Unbalanced; n > 0 {
 		t.Errorf("%s: %d steps are not balanced, the first: %+v", d.Duty.Name, n, d.Certificate.Unsolved[0])
 	}
-	if x := d.Balance.Closure(); x > 1e-9 {
+	if x := d.Balance.Closure(); x > 2e-8 {
 		t.Errorf("%s: closure %.2g", d.Duty.Name, x)
 	}
 }

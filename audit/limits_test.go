@@ -145,7 +145,8 @@ func TestLoadDrivesBackwards(t *testing.T) {
 // An orifice into a closed end carries nothing and changes nothing; the pressure behind
 // it is that in front.
 func TestDeadEnd(t *testing.T) {
-	want := ran(t, parsed(t, c1(t)), parsed(t, c1(t)).Circuits[0].Circuit, parsed(t, c1(t)).Duties[0])
+	plain := parsed(t, c1(t))
+	want := ran(t, plain, plain.Circuits[0].Circuit, plain.Duties[0])
 	for _, end := range []string{
 		"  - O1.B - J1.1\n",
 		"  - O1.B - L1.A\n  - L1.B - J1.2\n",
@@ -155,7 +156,7 @@ func TestDeadEnd(t *testing.T) {
 				map[bool]string{true: "    L1: {kind: line, length: 2 m, diameter: 12 mm}\n"}[strings.Contains(end, "L1")]))
 		got := ran(t, f, f.Circuits[0].Circuit, f.Duties[0])
 		sameEnergies(t, want, got, nil)
-		sameSignals(t, want, got, parsed(t, c1(t)).Circuits[0].Circuit, nil)
+		sameSignals(t, want, got, plain.Circuits[0].Circuit, nil)
 		for _, at := range []float64{1, 6, 8} {
 			near(t, "flow into the dead end", got.at(t, "O1.A.q", at), 0, 0, 1e-12)
 			near(t, "pressure behind the orifice [Pa]", got.at(t, "O1.B.p", at), got.at(t, "O1.A.p", at), 1e-8, 0)

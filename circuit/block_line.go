@@ -25,7 +25,7 @@ var lineKind = &Kind{
 		{Key: "fittings", Title: "Fittings", Symbol: "ζ", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "none counted unless given", Max: 1e4, Text: "sum of the loss coefficients of bends and fittings"},
 		{Key: "rise", Title: "Rise from A to B", Symbol: "h", Dim: units.Length, Default: "0 m", Origin: Assumed, Source: "level unless given", Min: -1000, Max: 1000, Text: "the lift of the oil is booked as stored energy"},
 	},
-	Losses: []LossKind{{"line", ToOil, "P = |Δpf·q|"}},
+	Losses: []LossKind{{"line", ToOil, "P = (Δp − ρ·g·h)·q"}},
 	Equations: []Equation{
 		{"Δp = (λ·l/d + ζ)·ρ·v²/2 + ρ·g·h", "Darcy-Weisbach; λ = 64/Re below Re 2000, Colebrook above 4000, smooth between"},
 	},
@@ -71,8 +71,7 @@ func (m *lineModel) book(k *booking) {
 	k.put(m.qA, k.m3s(q))
 	k.put(m.qB, -k.m3s(q))
 	k.put(m.sigV, k.m3s(q)/(math.Pi/4*m.d*m.d))
-	r, _ := m.friction(q)
-	k.pow[m.loss] += k.watts(r * q)
+	k.pow[m.loss] += k.watts((k.val(m.A) - k.val(m.B) - m.dpH) * q)
 	k.pow[m.lift] += k.watts(m.dpH * q)
 }
 

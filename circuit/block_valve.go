@@ -130,7 +130,7 @@ func buildValve(k *compiler, b *Block) model {
 	for i := range m.q {
 		m.q[i] = noSlot
 		if i < n {
-			m.q[i] = k.unknown(otherRow, b.ID)
+			m.q[i] = k.unknown(passRow, b.ID)
 		}
 	}
 	axis := follows(b)

@@ -62,7 +62,11 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 	}
 	if len(movers) == 0 {
 		if given != duty.None || len(follow) > 0 {
-			bad("no actuator in circuit %q moves axis %s; set axis: %s on a cylinder or motor", k.c.Name, a.Name, a.Name)
+			who := ""
+			if len(follow) > 0 {
+				who = ", which " + join(ids(follow), "and") + " follows"
+			}
+			bad("no actuator in circuit %q moves axis %s%s; set axis: %s on a cylinder or motor", k.c.Name, a.Name, who, a.Name)
 		}
 		return
 	}

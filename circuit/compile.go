@@ -70,9 +70,10 @@ type oilNode struct {
 type rowKind int
 
 const (
-	flowRow rowKind = iota
-	forceRow
-	otherRow
+	flowRow  rowKind = iota // of a node
+	forceRow                // of an actuator or free shaft
+	passRow                 // a flow through an edge
+	otherRow                // a pressure, or the aim of a control
 )
 
 // rowName says what a row is, for messages and the certificate.

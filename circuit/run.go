@@ -318,7 +318,7 @@ func (r *run) certify(k int, res balance.Result) {
 func (r *run) residual(i int) string {
 	left := r.solver.Residual(i)
 	switch r.rows[i].kind {
-	case flowRow:
+	case flowRow, passRow:
 		return units.Format(left*r.scales.q, units.Preferred(units.Flow, units.Metric), 3)
 	default:
 		return units.Format(left*r.scales.p, units.Preferred(units.Pressure, units.Metric), 3)
@@ -382,13 +382,16 @@ func (r *run) axesNow(k int, unbalanced bool) {
 			now.Demand = a.speed
 		}
 		s.Axes[i] = now
-		s.Driving = s.Driving || now.Load*now.Speed < 0
+		s.Driving = s.Driving || (now.Load*now.Speed < 0 && math.Abs(now.Speed) > stillSpeed)
 		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > HoldShare*r.topLoad[i])
 		r.state.travel[i] += dt * (r.state.speed[i] + now.Speed) / 2
 		r.state.speed[i] = now.Speed
 	}
 	r.state.lastT = s.T
 }
+
+// stillSpeed [m/s, rad/s] is a speed that nobody sees: a millimetre in a quarter of an hour.
+const stillSpeed = 1e-6
 
 // HoldShare is the share of the largest load of a duty above which a standing
 // axis counts as holding, below it as idle (our choice, stated in the report).

@@ -203,8 +203,7 @@ func (a *axisWatch) take(now AxisNow, given duty.Given, top, t, dt float64) {
 	if given == duty.MotionLoad {
 		switch {
 		case now.Standing:
-			// Below 1e-6 m/s or rad/s nobody sees it move: a millimetre in a quarter of an hour.
-			if v := math.Abs(now.Speed); v > math.Max(1e-3*top, 1e-6) && v > math.Abs(a.falls) {
+			if v := math.Abs(now.Speed); v > math.Max(1e-3*top, stillSpeed) && v > math.Abs(a.falls) {
 				a.falls, a.tFall = now.Speed, t
 			}
 		default:

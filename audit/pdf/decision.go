@@ -258,6 +258,7 @@ func (l *layout) against(d *audit.Decision) {
 			l.marked('▲', figures.RoleDanger, w, l.body())
 		}
 	}
+	l.gap(1)
 	if d.Published.Text != "" {
 		l.lead(side, "Published.", strings.TrimSpace(d.Published.Text+" "+d.Published.Explanation), style{size: 2.6, c: l.pal.Ink})
 	}

@@ -26,7 +26,7 @@ func (l *layout) energy() {
 	}
 	for i := range l.r.Circuits {
 		c := &l.r.Circuits[i]
-		l.heading(2, c.Name, 20)
+		l.heading(2, c.Name, 55) // with its note and the start of a table
 		if c.Note != "" {
 			l.para(c.Note, l.body())
 		}

@@ -207,7 +207,9 @@ func (l *layout) follow(s Section) float64 {
 	case s == Energy && len(steps) > 0:
 		return 2 + figureLeast*steps[0].Height()
 	case s == Duty && len(l.s.File.Duties) > 0:
-		return 25 + l.plotHeight(l.asked(0), l.s.File.Duties[0])
+		d := l.s.File.Duties[0]
+		_, name := l.headLines(2, dutyHead+d.Name)
+		return 20 + name + l.plotHeight(l.asked(0), d)
 	}
-	return 30
+	return keepable + 12 // a short table with its title
 }

@@ -96,10 +96,13 @@ func TestDocumentHoldsTheDecision(t *testing.T) {
 		n := 0
 		for _, d := range r.Decisions {
 			for _, row := range d.Rows {
-				for _, text := range []string{row.Before.Text, row.After.Text, row.Change.Text} {
-					if n++; text != "" && !have[text] {
-						t.Errorf("%s, %s: %q is not in the document", d.Proposal, row.Name, text)
-					}
+				n += 3
+				cells := []string{row.Name, row.Before.Text, row.After.Text}
+				if row.Change.Text != "" {
+					cells = append(cells, row.Change.Text)
+				}
+				if want := "|" + strings.Join(cells, "|") + "|"; !strings.Contains(strings.Join(pieces, "|"), want) {
+					t.Errorf("%s: no row %q in the document", d.Proposal, want)
 				}
 			}
 			for _, f := range d.Outcome {
@@ -264,14 +267,17 @@ func checkPage(t *testing.T, where string, p *pen.Recorder) {
 			}
 		}
 	}
-	body := 0.0
+	var last pen.Box
 	for _, b := range boxes {
-		if b.Y+b.H < bottom+2 {
-			body = max(body, b.Y+b.H)
+		if b.Y+b.H < bottom+2 && b.Y+b.H > last.Y+last.H {
+			last = b
 		}
 	}
-	if body < top+5 {
+	if last.Y+last.H < top+5 {
 		t.Errorf("%s is empty", where)
+	}
+	if last.Bold && last.Size > 3.17 { // larger than anything bold in tables and figures
+		t.Errorf("%s ends with the heading %q", where, last.Text)
 	}
 }
 

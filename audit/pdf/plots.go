@@ -13,6 +13,8 @@ import (
 	"barlitre/machines/units"
 )
 
+const dutyHead = "Duty: "
+
 // duties prints what is asked of the machine and the course of each circuit.
 func (l *layout) duties() {
 	if len(l.s.File.Duties) == 0 {
@@ -20,7 +22,7 @@ func (l *layout) duties() {
 	}
 	for i, d := range l.s.File.Duties {
 		asked := l.asked(i)
-		l.heading(2, "Duty: "+d.Name, 10+l.plotHeight(asked, d))
+		l.heading(2, dutyHead+d.Name, 10+l.plotHeight(asked, d))
 		l.para(l.dutyText(i), l.body())
 		l.plot(asked, d)
 		runs := l.courses(i)

@@ -72,8 +72,9 @@ type setTable struct {
 	s     *sheet
 	x, w  []float64
 	heads [][]string
-	last  string // group that the rows belong to
-	first int    // row that stands first on the page
+	lines [][][]string // of each cell of each row
+	last  string       // group that the rows belong to
+	first int          // row that stands first on the page
 }
 
 // table prints a table; one without rows prints its note alone.
@@ -169,6 +170,13 @@ func (k *setTable) place() {
 	for i, c := range k.cols {
 		k.heads = append(k.heads, k.style(row{sum: true}).wrap(c.head, k.w[i]))
 	}
+	for _, r := range k.rows {
+		cells := make([][]string, n)
+		for i := range cells {
+			cells[i] = k.cell(r, i)
+		}
+		k.lines = append(k.lines, cells)
+	}
 }
 
 // share gives widths that add up to all. Where there is room, each is its most and
@@ -229,8 +237,8 @@ func (k *setTable) cell(r row, i int) []string {
 
 func (k *setTable) height(i int) float64 {
 	n := 1
-	for c := range k.cols {
-		n = max(n, len(k.cell(k.rows[i], c)))
+	for _, lines := range k.lines[i] {
+		n = max(n, len(lines))
 	}
 	return float64(n)*k.style(k.rows[i]).line() + 2*k.pad()
 }

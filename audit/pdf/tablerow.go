@@ -58,16 +58,15 @@ func (k *setTable) row(i int) {
 	st := k.style(r)
 	if r.group {
 		k.last = r.cells[0]
-		k.span(st.wrap(r.cells[0], fullW), st)
+		k.span(k.lines[i][0], st)
 		return
 	}
-	if atTop := s.y <= top+k.headHeight()+0.01 && s.number > 1; atTop && r.carry != "" && len(r.cells) > 0 && r.cells[0] == "" {
-		r.cells = append([]string{r.carry}, r.cells[1:]...)
+	cells, most := k.lines[i], 1
+	if s.y <= top+k.headHeight()+0.01 && r.carry != "" && r.cells[0] == "" {
+		cells = append([][]string{st.wrap(r.carry, k.w[0])}, cells[1:]...)
 	}
-	cells, most := make([][]string, len(k.cols)), 1
-	for c := range k.cols {
-		cells[c] = k.cell(r, c)
-		most = max(most, len(cells[c]))
+	for _, lines := range cells {
+		most = max(most, len(lines))
 	}
 	if r.sum {
 		s.rule(side, side+fullW, s.y, s.pal.Secondary)

@@ -44,21 +44,21 @@ func (st style) wrap(text string, width float64) []string {
 
 func (st style) wrapPart(text string, width float64) []string {
 	var out []string
-	line := ""
+	line, used, space := "", 0.0, st.width(" ")
 	for _, word := range words(text) {
-		joined := word
-		if line != "" {
-			joined = line + " " + word
-		}
-		if st.width(joined) <= width {
-			line = joined
+		w := st.width(word)
+		if line != "" && used+space+w <= width {
+			line, used = line+" "+word, used+space+w
 			continue
 		}
 		if line != "" {
 			out = append(out, line)
 		}
-		for line = word; st.width(line) > width; {
+		for line, used = word, w; used > width; used = st.width(line) {
 			n := st.cut(line, width)
+			if n == len(line) {
+				break // one letter, wider than the room
+			}
 			out = append(out, line[:n])
 			line = line[n:]
 		}
@@ -163,18 +163,29 @@ func (s *sheet) bullets(items []string, st style) {
 	}
 }
 
+// head is how a heading looks.
+func (s *sheet) head(level int) style {
+	return style{size: [...]float64{5, 3.8, 3.2}[level-1], bold: true, c: s.pal.Ink}
+}
+
+// headLines returns the lines of a heading and how high they are.
+func (s *sheet) headLines(level int, text string) ([]string, float64) {
+	lines := s.head(level).wrap(text, fullW)
+	return lines, s.head(level).line() * float64(len(lines))
+}
+
 // heading writes a heading of level 1 to 3 and keeps it with the next follow mm.
 func (s *sheet) heading(level int, text string, follow float64) {
-	st := style{size: 3.2, bold: true, c: s.pal.Ink}
 	before, after := 3.0, 0.8
 	switch level {
 	case 1:
-		st.size, before, after = 5.0, 9, 3
+		before, after = 9, 3
 	case 2:
-		st.size, before, after = 3.8, 5.5, 1.2
+		before, after = 5.5, 1.2
 	}
-	lines := st.wrap(text, fullW)
-	s.need(before*s.room + st.line()*float64(len(lines)) + after + follow)
+	st := s.head(level)
+	lines, h := s.headLines(level, text)
+	s.need(before*s.room + h + after + follow)
 	s.gap(before)
 	if level < 3 {
 		s.to.mark(text, level-1, s.y)

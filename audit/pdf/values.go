@@ -19,7 +19,7 @@ func (l *layout) parameters() {
 		if len(c.Parameters) == 0 {
 			continue
 		}
-		l.heading(2, c.Name, 25)
+		l.heading(2, c.Name, 32)
 		l.table(blocks(c.Parameters))
 	}
 }

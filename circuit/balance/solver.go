@@ -264,7 +264,7 @@ func (s *Solver) iterate(p Problem, x []float64, form form, maxIt int, delta flo
 		s.hist[i] = norm
 	}
 	for it := 0; ; it++ {
-		if norm <= tolScale*s.tol(x) {
+		if tol := tolScale * s.tol(x); norm <= tol || (norm < 1e-6 && delta == 0 && s.rounded(x, form, tol)) {
 			return true, it
 		}
 		if it == maxIt || math.IsInf(norm, 1) {
@@ -291,6 +291,24 @@ func (s *Solver) tol(x []float64) float64 {
 		}
 	}
 	return Tol * (1 + 0.1*math.Min(m, 1e3))
+}
+
+// rounded reports whether the residual is within tolerance of what rounding of
+// the unknowns can leave in steep rows: rows are weighed by their largest slope,
+// from 10,000 up.
+func (s *Solver) rounded(x []float64, form form, tol float64) bool {
+	sum := 0.0
+	for i, r := range s.r {
+		if _, _, wg := form(x[i], s.g[i], s.Lo[i], s.Hi[i], s.Weight[i]); wg != 0 {
+			steep := 0.0
+			for _, v := range s.jac[i*s.n : i*s.n+s.n] {
+				steep = math.Max(steep, math.Abs(v))
+			}
+			r /= math.Max(1, 1e-4*steep)
+		}
+		sum += r * r
+	}
+	return math.Sqrt(sum) <= tol
 }
 
 // lineSearch moves x along s.dx: a full step, shortened as a whole where it

@@ -1,0 +1,83 @@
+// Package station is what the stations of the job share: the interface the frame
+// sees them by, and the context they read and act through. A station shows and
+// sends edits; it computes nothing.
+package station
+
+import (
+	"fyne.io/fyne/v2"
+
+	"barlitre/app/document"
+	"barlitre/audit"
+	"barlitre/audit/figures"
+	"barlitre/machines/units"
+)
+
+// What says what has changed, as a set.
+type What int
+
+// What may have changed.
+const (
+	Model     What = 1 << iota // the audit file: blocks, values, duties
+	Solution                   // a new result, or the last one is out of date
+	Clock                      // the clock moved
+	Settings                   // theme, units, decimal sign, scale
+	Selection                  // another block, circuit or duty is selected
+)
+
+// Has reports whether w holds x.
+func (w What) Has(x What) bool { return w&x != 0 }
+
+// Everything is what changes when another file is opened.
+const Everything = Model | Solution | Clock | Settings | Selection
+
+// Station is one page of the job. All methods are called on the UI goroutine.
+type Station interface {
+	// Name is the word on the job rail.
+	Name() string
+	// Content is made once.
+	Content() fyne.CanvasObject
+	// Changed tells a station that is shown what changed; one that is not shown
+	// gets all of it at once when it is.
+	Changed(w What)
+	// Mend reports whether something here needs mending: a dot on the rail.
+	Mend() bool
+	// Help is the short help of the station, in plain text with paragraphs.
+	Help() string
+}
+
+// Context is what stations read and act through. The frame implements it.
+type Context interface {
+	Doc() *document.Document
+	Window() fyne.Window
+
+	// Clock is the time into the duty at hand [s].
+	Clock() float64
+	SetClock(t float64)
+	// Duty is the index of the duty at hand.
+	Duty() int
+	SetDuty(i int)
+	// Selected is the block at hand; circuit is an index into the file's circuits, −1 = none.
+	Selected() (circuit int, block string)
+	Select(circuit int, block string)
+
+	// Solution is the last finished one, nil before the first; it may be of an
+	// older revision (then the frame says "out of date").
+	Solution() *audit.Solution
+	// Report lays the solution out in the user's units, nil before the first solution.
+	Report() *audit.Report
+
+	System() units.System
+	// Text writes a quantity in the user's unit for its dimension, with the user's decimal sign.
+	Text(si float64, d units.Dim, digits int) string
+	// Local puts the user's decimal sign into a printed text or number.
+	Local(text string) string
+	Palette() figures.Palette
+
+	// Go shows a station by name.
+	Go(name string)
+	// Explain opens the calculation of a figure.
+	Explain(f audit.Figure)
+	// Say shows a short message in the frame; Fail shows what went wrong and what is still safe.
+	Say(text string)
+	Fail(err error)
+}

@@ -1,0 +1,138 @@
+package widgets
+
+import (
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/driver/desktop"
+	"fyne.io/fyne/v2/theme"
+	"fyne.io/fyne/v2/widget"
+)
+
+// Field is an entry for one value. What is typed is handed over on Enter and when
+// the focus leaves; Escape brings the old value back; a value that is refused stays,
+// marked, with the reason under it, and nothing is lost.
+type Field struct {
+	widget.Entry
+	Commit func(text string) error // nil error = taken
+	Note   *widget.Label           // where a refusal is said; may be nil
+	value  string                  // what the model has
+	hint   string
+	bad    bool
+}
+
+// NewField makes a field that shows value.
+func NewField(value string, commit func(string) error) *Field {
+	f := &Field{Commit: commit, value: value}
+	f.ExtendBaseWidget(f)
+	f.Wrapping = fyne.TextWrapOff
+	f.Scroll = container.ScrollNone
+	f.Text = value
+	f.OnSubmitted = func(string) { f.commit() }
+	return f
+}
+
+// SetValue brings the model's value in, unless the user is in the middle of another.
+func (f *Field) SetValue(value, hint string) {
+	f.hint = hint
+	if value == f.value && !f.bad && f.Text == value {
+		f.say("")
+		return
+	}
+	changed := f.value != value
+	f.value = value
+	if changed || (!f.bad && f.Text != value) {
+		f.bad = false
+		f.SetText(value)
+		f.say("")
+	}
+}
+
+func (f *Field) say(text string) {
+	if f.Note == nil {
+		return
+	}
+	if text == "" {
+		text = f.hint
+	}
+	if f.Note.Text != text {
+		f.Note.SetText(text)
+	}
+	want := widget.LowImportance
+	if f.bad {
+		want = widget.DangerImportance
+	}
+	if f.Note.Importance != want {
+		f.Note.Importance = want
+		f.Note.Refresh()
+	}
+}
+
+func (f *Field) commit() {
+	text := strings.TrimSpace(f.Text)
+	if text == f.value && !f.bad {
+		return
+	}
+	if f.Commit == nil {
+		return
+	}
+	if err := f.Commit(text); err != nil {
+		f.bad = true
+		f.say("⚠ " + err.Error())
+		return
+	}
+	f.bad = false
+	f.say("")
+}
+
+// Bad reports whether what stands in the field was refused.
+func (f *Field) Bad() bool { return f.bad }
+
+// FocusLost hands the value over.
+func (f *Field) FocusLost() {
+	f.Entry.FocusLost()
+	f.commit()
+}
+
+// TypedKey takes Escape for itself.
+func (f *Field) TypedKey(k *fyne.KeyEvent) {
+	if k.Name == fyne.KeyEscape {
+		f.bad = false
+		f.SetText(f.value)
+		f.say("")
+		return
+	}
+	f.Entry.TypedKey(k)
+}
+
+// Cursor is that of text.
+func (f *Field) Cursor() desktop.Cursor { return desktop.TextCursor }
+
+// Card is a piece of paper with a title: the ground of every panel.
+func Card(title string, content fyne.CanvasObject) fyne.CanvasObject {
+	head := widget.NewLabelWithStyle(title, fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
+	return container.NewBorder(head, nil, nil, nil, content)
+}
+
+// Spaced puts room of the grid's step around an object.
+func Spaced(o fyne.CanvasObject) fyne.CanvasObject {
+	return container.New(layoutPad{theme.Padding() * 2}, o)
+}
+
+type layoutPad struct{ by float32 }
+
+func (l layoutPad) Layout(objects []fyne.CanvasObject, size fyne.Size) {
+	for _, o := range objects {
+		o.Move(fyne.NewPos(l.by, l.by))
+		o.Resize(size.SubtractWidthHeight(2*l.by, 2*l.by))
+	}
+}
+
+func (l layoutPad) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	m := fyne.Size{}
+	for _, o := range objects {
+		m = m.Max(o.MinSize())
+	}
+	return m.AddWidthHeight(2*l.by, 2*l.by)
+}
