@@ -230,8 +230,7 @@ func everything(r *recorders) string {
 }
 
 // lay lays a solution out on recorders and checks every page: all text inside the
-// margins, none on another, none cut, and no page nearly empty but the last ones of
-// its parts that stand by themselves.
+// margins, none on another, none cut, no page empty, none ending with a heading.
 func lay(t *testing.T, name string, s *audit.Solution, opt Options) *recorders {
 	t.Helper()
 	opt.Date = day
