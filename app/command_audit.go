@@ -197,7 +197,7 @@ func (c *auditCall) csvFiles(path string) func(string) (io.WriteCloser, error) {
 		dir = filepath.Join(dir, baseName(path))
 	}
 	return func(name string) (io.WriteCloser, error) {
-		if err := os.MkdirAll(dir, 0o777); err != nil {
+		if err := os.MkdirAll(dir, 0o755); err != nil {
 			return nil, err
 		}
 		return os.Create(filepath.Join(dir, name))
@@ -223,7 +223,7 @@ func (c *auditCall) writeJSON(results []*audit.Result, out io.Writer) error {
 
 // writeWhole writes a file completely or leaves what was there.
 func writeWhole(path string, write func(io.Writer) error) error {
-	if err := os.MkdirAll(filepath.Dir(path), 0o777); err != nil {
+	if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
 		return err
 	}
 	f, err := os.CreateTemp(filepath.Dir(path), "."+filepath.Base(path)+"-*")
@@ -236,7 +236,7 @@ func writeWhole(path string, write func(io.Writer) error) error {
 		err = closed
 	}
 	if err == nil {
-		err = os.Chmod(f.Name(), 0o666)
+		err = os.Chmod(f.Name(), 0o644)
 	}
 	if err == nil {
 		err = os.Rename(f.Name(), path)

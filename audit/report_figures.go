@@ -22,7 +22,9 @@ func dutyPage(p printer, d *DutyRun) DutyPage {
 	add := func(name string, v float64, text string, c Calculation) {
 		page.Figures = append(page.Figures, Figure{name, v, text, c})
 	}
+	whole := b.SupplyIn.Total() + math.Abs(b.WorkNegative().Total()) + math.Abs(b.StoredEnergy().Total())
 	energy := func(name string, e float64, formula string) {
+		e = nothing(e, whole)
 		add(name, e, p.energy(e), Calculation{formula, fmt.Sprintf("%s over %s in %d time steps", p.energy(e), p.seconds(b.Cycle), b.Steps), fromBalance})
 	}
 	add("cycle", b.Cycle, p.seconds(b.Cycle), Calculation{"t_last − t_first", p.seconds(b.Cycle), "rows of the duty"})
@@ -45,9 +47,9 @@ func dutyPage(p printer, d *DutyRun) DutyPage {
 
 func peakFigures(p printer, d *DutyRun) []Figure {
 	b := d.Balance
-	name := "highest pressure"
+	pressure := p.in(nothing(d.Peak.Value, 100*units.Bar), units.Pressure, 3)
 	if d.Peak.UpperEstimate {
-		name += " (upper estimate)"
+		pressure = "≤ " + pressure
 	}
 	at := func(t float64) string { return "at " + p.seconds(t) }
 	work := ratio(b.WorkPositive().Total(), b.SupplyIn.Total())
@@ -57,7 +59,7 @@ func peakFigures(p printer, d *DutyRun) []Figure {
 	}
 	return []Figure{
 		{"work against loads, of energy drawn", work, workText, Calculation{"work⁺ / in", workCalc, fromBalance}},
-		{name, d.Peak.Value, p.in(d.Peak.Value, units.Pressure, 3), Calculation{"max p", d.Peak.At + " " + at(d.Peak.T), "steady balance at each time step; shocks are not in it"}},
+		{"highest pressure (≤: upper estimate)", d.Peak.Value, pressure, Calculation{"max p", d.Peak.At + " " + at(d.Peak.T), "steady balance at each time step; shocks are not in it, and in fast ramps the oil has no time to follow"}},
 		{"highest shaft power", b.PeakShaft, p.power(b.PeakShaft), Calculation{"max Σ T·ω over the prime movers", at(b.PeakShaftAt), fromBalance}},
 		{"highest power drawn", b.PeakSupply, p.power(b.PeakSupply), Calculation{"max Σ supply", at(b.PeakSupplyAt), fromBalance}},
 		{"15-minute mean of power drawn", b.Demand.Mean, p.power(b.Demand.Mean),

@@ -96,6 +96,9 @@ func (k *compiler) placeMover(b *Block) {
 	}
 }
 
+// heldFlow is the share of the flow scale below which a held actuator stands.
+const heldFlow = 1e-8
+
 func buildCylinder(k *compiler, b *Block) model {
 	i := k.axisOf[b.Word("axis")]
 	mv := k.movers[i]
@@ -183,6 +186,9 @@ func (m *cylinderModel) eval(e *eval) {
 
 func (m *cylinderModel) book(k *booking) {
 	vs := k.val(m.v)
+	if k.step.axes[m.axis].standing && math.Abs(vs) < heldFlow {
+		vs = 0 // what the resting leak lets through is no motion
+	}
 	v := vs / m.scale
 	pA, pB := k.pa(m.pA), k.pa(m.pB)
 	leak := m.kl1 * (k.val(m.pA) - k.val(m.pB))

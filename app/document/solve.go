@@ -1,0 +1,172 @@
+package document
+
+import (
+	"context"
+	"time"
+
+	"barlitre/audit"
+)
+
+// solver is audit.Solve.
+type solver func(ctx context.Context, f *audit.File, opt audit.Options) (*audit.Solution, error)
+
+// progressEvery keeps progress from flooding a window's event queue.
+const progressEvery = 50 * time.Millisecond
+
+// Solution returns the last solution that finished and its revision; nil and 0 when
+// there is none of the present audit. It is only to be read.
+func (d *Document) Solution() (s *audit.Solution, revision int) {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	return d.solution, d.solved
+}
+
+// Current reports whether Solution belongs to the present revision.
+func (d *Document) Current() bool {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	return d.current()
+}
+
+func (d *Document) current() bool { return d.solution != nil && d.solved == d.now.revision }
+
+// Solving reports whether the present revision is being solved, and how far that is;
+// total is 0 until it is known.
+func (d *Document) Solving() (running bool, done, total int) {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	return d.wanted != 0, d.done, d.total
+}
+
+// Failure returns why the present revision could not be solved, or nil.
+func (d *Document) Failure() error {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	return d.failure
+}
+
+// CancelSolve gives up solving the present revision; the next edit, or Resolve,
+// begins again.
+func (d *Document) CancelSolve() {
+	d.mu.Lock()
+	was, revision := d.wanted != 0, d.now.revision
+	d.wanted = 0
+	d.stop()
+	d.mu.Unlock()
+	if was {
+		d.emit(Event{Kind: SolveCancelled, Revision: revision})
+	}
+}
+
+// Resolve solves the present revision, once more if it was solved before.
+func (d *Document) Resolve() {
+	d.mu.Lock()
+	d.request()
+	ticket := d.ticket
+	d.mu.Unlock()
+	d.release(ticket)
+}
+
+// request asks for the present revision to be solved instead of what is being
+// solved now. mu is held.
+func (d *Document) request() {
+	d.ticket++
+	d.wanted, d.ready = d.ticket, false
+	d.done, d.total, d.failure = 0, 0, nil
+	d.stop()
+}
+
+// release lets the solver begin, after the edit behind the ticket was told: so no
+// screen hears of a solution before it hears of the revision.
+func (d *Document) release(ticket int) {
+	d.mu.Lock()
+	if d.wanted == ticket && !d.closed {
+		d.ready = true
+	}
+	d.mu.Unlock()
+	poke(d.wake)
+}
+
+func poke(c chan struct{}) {
+	select {
+	case c <- struct{}{}:
+	default:
+	}
+}
+
+func (d *Document) solveAll() {
+	defer d.running.Done()
+	for {
+		select {
+		case <-d.quit:
+			return
+		case <-d.wake:
+		}
+		for d.solveNext() {
+		}
+	}
+}
+
+// solveNext solves what is wanted, if anything is.
+func (d *Document) solveNext() bool {
+	d.mu.Lock()
+	if d.wanted == 0 || !d.ready {
+		d.mu.Unlock()
+		return false
+	}
+	ticket, now := d.wanted, d.now
+	ctx, stop := context.WithCancel(context.Background())
+	defer stop()
+	d.stop = stop
+	d.mu.Unlock()
+
+	var s *audit.Solution
+	err := guarded(func() (err error) {
+		s, err = d.solve(ctx, now.file, audit.Options{Progress: d.progress(ticket, now.revision)})
+		return err
+	})
+	d.finish(ticket, now.revision, s, err)
+	return true
+}
+
+// progress returns the receiver of the progress of one solve; audit calls it from
+// one goroutine at a time.
+func (d *Document) progress(ticket, revision int) func(done, total int) {
+	var last time.Time
+	return func(done, total int) {
+		d.mu.Lock()
+		asked := d.wanted == ticket
+		if asked {
+			d.done, d.total = done, total
+		}
+		d.mu.Unlock()
+		if now := time.Now(); asked && now.Sub(last) >= progressEvery {
+			last = now
+			d.emit(Event{Kind: Solving, Revision: revision, Done: done, Total: total})
+		}
+	}
+}
+
+// finish keeps a result. One that was overtaken by an edit just as it finished is a
+// result of its own revision all the same; one of an audit that is no longer open is
+// not. Solves end in the order of their revisions, as there is one at a time.
+func (d *Document) finish(ticket, revision int, s *audit.Solution, err error) {
+	e := Event{Revision: revision}
+	d.mu.Lock()
+	asked := d.wanted == ticket
+	if asked {
+		d.wanted = 0
+	}
+	switch {
+	case err == nil && revision >= d.opened && !d.closed:
+		d.solution, d.solved = s, revision
+		e.Kind = Solved
+	case err != nil && asked:
+		d.failure = err
+		e.Kind, e.Err = SolveFailed, err
+	}
+	d.mu.Unlock()
+	if e.Kind != 0 {
+		d.emit(e)
+	}
+}
