@@ -3,7 +3,9 @@ package main
 import (
 	"fmt"
 	"io"
+	"os"
 	"slices"
+	"strings"
 )
 
 // Exit codes, the same for all commands.
@@ -26,28 +28,45 @@ var commands = []command{
 	{"blocks", "[KIND]", "list the kinds of block, or all that is known of one", blocks},
 }
 
-// run carries out the command named by the first argument and returns the exit code.
+// run carries out the command named by the first argument and returns the exit
+// code. Without a command it opens the window, on the file named if there is one.
 func run(args []string, out, errs io.Writer) int {
-	if len(args) == 0 || slices.Contains([]string{"-h", "-help", "--help", "help"}, args[0]) {
-		usage(out)
-		if len(args) == 0 {
+	if len(args) > 0 {
+		if slices.Contains([]string{"-h", "-help", "--help", "help"}, args[0]) {
+			usage(out)
+			return exitOK
+		}
+		for _, c := range commands {
+			if c.name == args[0] {
+				return c.run(args[1:], out, errs)
+			}
+		}
+	}
+	path, isFile := "", len(args) == 0
+	if len(args) == 1 {
+		_, err := os.Stat(args[0])
+		path, isFile = args[0], err == nil || strings.HasSuffix(args[0], ".yaml")
+	}
+	switch {
+	case !isFile:
+		fmt.Fprintf(errs, "barlitre: there is no command and no file %q\n\n", args[0])
+	case openWindow == nil:
+		fmt.Fprintln(errs, "barlitre: this build has no window; it has these commands:")
+		fmt.Fprintln(errs)
+	default:
+		if err := openWindow(path); err != nil {
+			fmt.Fprintln(errs, "barlitre:", err)
 			return exitUnreadable
 		}
 		return exitOK
 	}
-	for _, c := range commands {
-		if c.name == args[0] {
-			return c.run(args[1:], out, errs)
-		}
-	}
-	fmt.Fprintf(errs, "barlitre: there is no command %q\n\n", args[0])
 	usage(errs)
 	return exitUnreadable
 }
 
 func usage(w io.Writer) {
 	fmt.Fprintln(w, "Barlitre balances oil-hydraulic circuits over a duty cycle and audits their energy.")
-	fmt.Fprintln(w)
+	fmt.Fprintln(w, "\n  barlitre [FILE]\n      open the window")
 	for _, c := range commands {
 		fmt.Fprintf(w, "  barlitre %s %s\n      %s\n", c.name, c.args, c.text)
 	}

@@ -86,6 +86,9 @@ func (f *Field) commit() {
 	f.say("")
 }
 
+// Typing reports whether the field holds text that was not handed over yet.
+func (f *Field) Typing() bool { return f.Text != f.value }
+
 // Bad reports whether what stands in the field was refused.
 func (f *Field) Bad() bool { return f.bad }
 

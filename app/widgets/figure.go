@@ -14,7 +14,8 @@ import (
 	"barlitre/audit/pen"
 )
 
-// Part is a place in a figure that can be pointed at, in figure units.
+// Part is a place in a figure that can be pointed at. Draw gives it in figure
+// units; afterwards it is in units of the widget.
 type Part struct {
 	Name       string // for scripts and for the callbacks
 	Text       string // for scripts: what it shows
@@ -22,7 +23,8 @@ type Part struct {
 	Click      bool // a hand shows over it
 }
 
-// Draw draws a figure of size w × h on p and says what can be pointed at.
+// Draw draws a figure of size w × h on p and says what can be pointed at. The size
+// is that of the widget divided by the scale of the theme.
 type Draw func(p pen.Pen, w, h float64) []Part
 
 // Figure is a widget drawn by a pen: the same figures that the report prints.
@@ -62,7 +64,7 @@ func (f *Figure) paint(w, h int) image.Image {
 	if f.pen == nil || f.pen.Image().Rect.Dx() != w || f.pen.Image().Rect.Dy() != h {
 		f.pen = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
 	}
-	f.pen.Reset()
+	f.pen.Reset(f.pen.Image())
 	var ground color.Color = color.Transparent
 	if f.Ground != nil {
 		ground = f.Ground()
@@ -72,10 +74,16 @@ func (f *Figure) paint(w, h int) image.Image {
 	if size.Width <= 0 || size.Height <= 0 {
 		return f.pen.Image()
 	}
-	k := float64(w) / float64(size.Width)
-	f.pen.Push(0, 0, k)
-	f.parts = f.draw(f.pen, float64(size.Width), float64(size.Height))
+	// Figures have text of their own sizes: at a larger scale they are drawn as if
+	// on a smaller sheet, and enlarged.
+	scale := float64(Scale())
+	f.pen.Push(0, 0, float64(w)/float64(size.Width)*scale)
+	f.parts = f.draw(f.pen, float64(size.Width)/scale, float64(size.Height)/scale)
 	f.pen.Pop()
+	for i := range f.parts {
+		p := &f.parts[i]
+		p.X, p.Y, p.W, p.H = p.X*scale, p.Y*scale, p.W*scale, p.H*scale
+	}
 	return f.pen.Image()
 }
 
@@ -137,7 +145,10 @@ func (f *Figure) Cursor() desktop.Cursor {
 }
 
 // MinSize is the least size.
-func (f *Figure) MinSize() fyne.Size { f.ExtendBaseWidget(f); return f.min }
+func (f *Figure) MinSize() fyne.Size {
+	k := Scale()
+	return fyne.NewSize(f.min.Width*k, f.min.Height*k)
+}
 
 // Refresh draws anew.
 func (f *Figure) Refresh() { f.raster.Refresh(); f.BaseWidget.Refresh() }

@@ -1,0 +1,137 @@
+package document
+
+import (
+	"fmt"
+	"os"
+	"path/filepath"
+
+	"barlitre/audit"
+	"barlitre/circuit"
+	"barlitre/samples"
+)
+
+// fileExt is what audit files end in when the user types no ending.
+const fileExt = ".yaml"
+
+// emptyText is the audit that begins with nothing drawn. The working temperature is a
+// guess, and is marked so.
+const emptyText = `format: barlitre/1
+title: New audit
+site: {name: ""}
+oil: {grade: ISO VG 46, temperature: {value: 50 C, origin: assumed}}
+axes: {}
+duties: []
+circuits: []
+`
+
+// Open reads an audit file in place of the present audit, whose unsaved changes and
+// autosave are given up: ask first when Dirty. problems are what stops or is likely
+// wrong in the file; what is right in it is solved. The error says why it is not an
+// audit file or cannot be read; the present audit then stays.
+func (d *Document) Open(path string) (problems []circuit.Finding, err error) {
+	path, err = filepath.Abs(path)
+	if err != nil {
+		return nil, fmt.Errorf("open %s: %w", path, err)
+	}
+	var f *audit.File
+	var found []circuit.Finding
+	if err := guarded(func() error { f, found = audit.Read(path); return nil }); err != nil {
+		return nil, fmt.Errorf("open %s: %w", path, err)
+	}
+	if f == nil {
+		return nil, notRead(path, found)
+	}
+	if err := d.begin(f, origin{Path: path}); err != nil {
+		return nil, err
+	}
+	d.addRecent(path)
+	for _, p := range checkFile(f) {
+		if p.Level == circuit.Stops || p.Level == circuit.Warns {
+			problems = append(problems, p)
+		}
+	}
+	return problems, nil
+}
+
+func notRead(path string, found []circuit.Finding) error {
+	if len(found) == 0 { // excluded: a file that is not read has a finding
+		return fmt.Errorf("open %s: it cannot be read", path)
+	}
+	return fmt.Errorf("open %s: %w; the audit that was open stays", path, found[0])
+}
+
+// OpenSample opens a copy of a shipped sample, which has no file yet. The present
+// audit goes, as with Open.
+func (d *Document) OpenSample(name string) error {
+	data, err := samples.Read(name)
+	if err != nil {
+		return err
+	}
+	o := origin{Sample: name}
+	f, found := audit.Parse(data, o.opener(), "")
+	if f == nil {
+		return notRead(name, found)
+	}
+	return d.begin(f, o)
+}
+
+// OpenEmpty begins an audit with nothing drawn. The present audit goes, as with Open.
+func (d *Document) OpenEmpty() error {
+	f, _ := audit.Parse([]byte(emptyText), nil, "")
+	return d.begin(f, origin{})
+}
+
+// begin puts another audit into the document, as saved.
+func (d *Document) begin(f *audit.File, o origin) error {
+	d.files.Lock()
+	revision, ticket, err := d.replace(f, o, f.Bytes(), history{})
+	if err == nil {
+		old := d.session
+		d.session = nil
+		err = old.drop()
+	}
+	d.files.Unlock()
+	if revision != 0 {
+		d.announce(Opened, revision, ticket)
+	}
+	return err
+}
+
+// replace makes f the present audit, to be announced. files is held.
+func (d *Document) replace(f *audit.File, o origin, saved []byte, past history) (revision, ticket int, err error) {
+	d.editing.Lock()
+	defer d.editing.Unlock()
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	if d.closed {
+		return 0, 0, errClosed
+	}
+	d.now.origin, d.saved, d.past = o, saved, past
+	d.solution, d.solved = nil, 0
+	revision, ticket = d.install(f, f.Bytes())
+	d.opened = revision
+	return revision, ticket, nil
+}
+
+// opener returns how the recordings of an audit are read.
+func (o origin) opener() audit.Open {
+	switch {
+	case o.Path != "":
+		dir := filepath.Dir(o.Path)
+		return func(name string) ([]byte, error) { return os.ReadFile(filepath.Join(dir, filepath.FromSlash(name))) }
+	case o.Sample != "":
+		return samples.Read
+	}
+	return nil
+}
+
+// text returns what an audit that comes from o begins with.
+func (o origin) text() ([]byte, error) {
+	switch {
+	case o.Path != "":
+		return os.ReadFile(o.Path)
+	case o.Sample != "":
+		return samples.Read(o.Sample)
+	}
+	return []byte(emptyText), nil
+}

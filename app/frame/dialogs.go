@@ -1,0 +1,296 @@
+package frame
+
+import (
+	"os"
+	"path/filepath"
+	"strconv"
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/dialog"
+	"fyne.io/fyne/v2/storage"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/document"
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+)
+
+// box is a dialog whose first button can be pressed with Enter and that Escape closes.
+type box struct {
+	d *dialog.CustomDialog
+}
+
+// answer is a button of a box.
+type answer struct {
+	verb   string
+	danger bool
+	do     func()
+}
+
+// ask shows text with buttons. The first answer is the one Enter gives.
+func (f *Frame) ask(title string, content fyne.CanvasObject, answers ...answer) *box {
+	b := &box{d: dialog.NewCustomWithoutButtons(title, content, f.win)}
+	var buttons []fyne.CanvasObject
+	for i, a := range answers {
+		button := newBoxButton(a.verb, func() {
+			b.d.Hide()
+			if a.do != nil {
+				a.do()
+			}
+		}, b.d.Hide)
+		switch {
+		case a.danger:
+			button.Importance = widget.DangerImportance
+		case i == 0:
+			button.Importance = widget.HighImportance
+		}
+		widgets.Name(button, "ask."+strings.ToLower(a.verb))
+		buttons = append(buttons, button)
+	}
+	b.d.SetButtons(buttons)
+	b.d.Show()
+	f.win.Canvas().Focus(buttons[0].(fyne.Focusable))
+	return b
+}
+
+// boxButton takes Enter and Escape, which the toolkit's dialogs do not.
+type boxButton struct {
+	widget.Button
+	close func()
+}
+
+func newBoxButton(text string, do, close func()) *boxButton {
+	b := &boxButton{close: close}
+	b.Text, b.OnTapped = text, do
+	b.ExtendBaseWidget(b)
+	return b
+}
+
+// TypedKey presses or closes.
+func (b *boxButton) TypedKey(k *fyne.KeyEvent) {
+	switch k.Name {
+	case fyne.KeyEscape:
+		b.close()
+	case fyne.KeyReturn, fyne.KeyEnter:
+		b.OnTapped()
+	default:
+		b.Button.TypedKey(k)
+	}
+}
+
+// DumpText is for scripts.
+func (b *boxButton) DumpText() string { return b.Text }
+
+func paragraph(text string, width float32) fyne.CanvasObject {
+	l := widget.NewLabel(text)
+	l.Wrapping = fyne.TextWrapWord
+	return container.New(fixedWidth{width * widgets.Scale()}, l)
+}
+
+// fixedWidth gives text a width to wrap to.
+type fixedWidth struct{ w float32 }
+
+func (l fixedWidth) Layout(objects []fyne.CanvasObject, size fyne.Size) {
+	for _, o := range objects {
+		o.Resize(size)
+	}
+}
+
+func (l fixedWidth) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	m := fyne.NewSize(l.w, 0)
+	for _, o := range objects {
+		o.Resize(fyne.NewSize(l.w, o.MinSize().Height))
+		m.Height += o.MinSize().Height
+	}
+	return m
+}
+
+func (f *Frame) tellFailure(text string) {
+	f.ask("This did not work", paragraph(text, 460), answer{verb: "Close"})
+}
+
+// leave asks what to do with unsaved changes, then goes on.
+func (f *Frame) leave(then func()) {
+	if !f.doc.Dirty() {
+		then()
+		return
+	}
+	f.ask("Unsaved changes", paragraph(f.doc.Title()+" has changes that are not saved.", 420),
+		answer{verb: "Save", do: func() { f.save(then) }},
+		answer{verb: "Discard", danger: true, do: then},
+		answer{verb: "Cancel"})
+}
+
+// quit closes the window once unsaved changes are dealt with.
+func (f *Frame) quit() {
+	f.leave(func() {
+		f.closed = true
+		f.player.stop()
+		size := f.win.Canvas().Size()
+		f.settings.width, f.settings.height = size.Width, size.Height
+		f.settings.write(f.app.Preferences())
+		f.dumper.stop()
+		if err := f.doc.Abandon(); err != nil {
+			fyne.LogError("close", err)
+		}
+		f.win.Close()
+	})
+}
+
+func (f *Frame) open(path string) {
+	problems, err := f.doc.Open(path)
+	if err != nil {
+		f.Fail(err)
+		return
+	}
+	if n := len(problems); n > 0 {
+		f.Say(plural(n, "finding", "findings") + " in " + filepath.Base(path) + "; they stand on the Circuit station")
+	} else {
+		f.Say("Opened " + path)
+	}
+}
+
+func plural(n int, one, many string) string {
+	if n == 1 {
+		return "1 " + one
+	}
+	return strconv.Itoa(n) + " " + many
+}
+
+func (f *Frame) openSample(name string) {
+	if err := f.doc.OpenSample(name); err != nil {
+		f.Fail(err)
+	}
+}
+
+func (f *Frame) askOpen() {
+	d := dialog.NewFileOpen(func(r fyne.URIReadCloser, err error) {
+		if err != nil {
+			f.Fail(err)
+		} else if r != nil {
+			path := r.URI().Path()
+			r.Close()
+			f.open(path)
+		}
+	}, f.win)
+	d.SetFilter(storage.NewExtensionFileFilter([]string{".yaml", ".yml"}))
+	f.startAt(d)
+	d.Resize(fyne.NewSize(760, 520))
+	d.Show()
+}
+
+// startAt opens a file dialog where the open file is.
+func (f *Frame) startAt(d *dialog.FileDialog) {
+	dir := filepath.Dir(f.doc.Path())
+	if f.doc.Path() == "" {
+		dir, _ = os.UserHomeDir()
+	}
+	if l, err := storage.ListerForURI(storage.NewFileURI(dir)); err == nil {
+		d.SetLocation(l)
+	}
+}
+
+// save saves, asking for a name where there is none, then goes on.
+func (f *Frame) save(then func()) {
+	if f.doc.Path() == "" {
+		f.saveAs(then)
+		return
+	}
+	f.saved(f.doc.Save(), then)
+}
+
+func (f *Frame) saved(err error, then func()) {
+	if err != nil {
+		f.Fail(err)
+		return
+	}
+	f.Say("Saved " + f.doc.Path())
+	f.changed(station.Model)
+	if then != nil {
+		then()
+	}
+}
+
+// saveAs asks for a name. Scripts may give a folder instead.
+func (f *Frame) saveAs(then func()) {
+	if dir := os.Getenv(saveDirVariable); dir != "" {
+		f.saved(f.doc.SaveAs(filepath.Join(dir, "audit.yaml")), then)
+		return
+	}
+	d := dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
+		if err != nil {
+			f.Fail(err)
+		} else if w != nil {
+			path := w.URI().Path()
+			w.Close() // the document writes beside and renames, so that a crash loses nothing
+			if info, err := os.Stat(path); err == nil && info.Size() == 0 {
+				os.Remove(path)
+			}
+			f.saved(f.doc.SaveAs(path), then)
+		}
+	}, f.win)
+	d.SetFileName("audit.yaml")
+	f.startAt(d)
+	d.Resize(fyne.NewSize(760, 520))
+	d.Show()
+}
+
+// saveDirVariable names the folder that scripts save into, without a dialog.
+const saveDirVariable = "BARLITRE_SAVE_DIR"
+
+// offerRecovery offers what an earlier run kept before it ended without closing.
+func (f *Frame) offerRecovery() {
+	list := f.doc.Recoverable()
+	if len(list) == 0 {
+		return
+	}
+	r := list[0]
+	name := r.Path
+	if name == "" {
+		name = "an audit without a name"
+	}
+	f.ask("Recover unsaved work?", paragraph("The program ended without closing. Changes to "+name+" were kept at "+r.When.Format("2006-01-02 15:04:05")+".", 460),
+		answer{verb: "Recover", do: func() { f.leave(func() { f.recover(r) }) }},
+		answer{verb: "Discard", danger: true, do: func() {
+			if err := f.doc.Discard(r); err != nil {
+				f.Fail(err)
+			}
+		}},
+		answer{verb: "Later"})
+}
+
+func (f *Frame) recover(r document.Recovery) {
+	if err := f.doc.Recover(r); err != nil {
+		f.Fail(err)
+		return
+	}
+	f.Say("Recovered. Save it to keep it.")
+}
+
+// Explain opens the calculation of a figure: formula, numbers, sources.
+func (f *Frame) Explain(x audit.Figure) {
+	line := func(title, text string) fyne.CanvasObject {
+		head := widget.NewLabelWithStyle(title, fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
+		return container.NewVBox(head, paragraph(f.Local(text), 520))
+	}
+	content := container.NewVBox(
+		widgets.Name(widget.NewLabelWithStyle(f.Local(x.Text), fyne.TextAlignLeading, fyne.TextStyle{Bold: true}), "explain.value"),
+		line("Formula", x.Calculation.Formula), line("Numbers", x.Calculation.Numbers), line("Source", x.Calculation.Source))
+	f.ask("Calculation: "+x.Name, content, answer{verb: "Close"})
+}
+
+// help shows the short help of the station at hand.
+func (f *Frame) help() {
+	s := f.stations[f.current]
+	f.ask(s.Name(), container.NewVScroll(paragraph(s.Help(), 560)), answer{verb: "Close"}).d.Resize(fyne.NewSize(620, 420))
+}
+
+func (f *Frame) about() {
+	f.ask("About Barlitre", paragraph("Barlitre balances oil-hydraulic circuits over a duty cycle and audits throttled control against displacement control: energy, heat, cooler, money.\n\n"+
+		"1 bar × 1 litre = 100 J: the unit of what a valve burns.\n\n"+
+		"Results are estimates from a steady balance. They do not show that a load is held, a pressure limited or a machine safe. "+
+		"Work on pressure systems is for qualified persons, and local rules come first.\n\nSymbols are based on ISO 1219-1. Licence: MIT.", 520), answer{verb: "Close"})
+}

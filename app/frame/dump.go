@@ -1,0 +1,71 @@
+package frame
+
+import (
+	"bytes"
+	"fmt"
+	"os"
+	"time"
+
+	"fyne.io/fyne/v2"
+
+	"barlitre/app/widgets"
+)
+
+// dumpVariable names the file that a text dump of the window is written to, for
+// scripts: named widgets with their text and place, and the state of the document.
+const dumpVariable = "BARLITRE_DUMP"
+
+// dumper writes the dump a moment after the last change.
+type dumper struct {
+	f    *Frame
+	path string
+	quit chan struct{}
+	last []byte
+}
+
+func newDumper(f *Frame) *dumper {
+	d := &dumper{f: f, path: os.Getenv(dumpVariable)}
+	if d.path == "" {
+		return d
+	}
+	d.quit = make(chan struct{})
+	go func() {
+		tick := time.NewTicker(150 * time.Millisecond)
+		defer tick.Stop()
+		for {
+			select {
+			case <-d.quit:
+				return
+			case <-tick.C:
+				fyne.DoAndWait(d.write)
+			}
+		}
+	}()
+	return d
+}
+
+func (d *dumper) write() {
+	if d.f.closed {
+		return
+	}
+	var b bytes.Buffer
+	_, solved := d.f.doc.Solution()
+	fmt.Fprintf(&b, "frame.title\t%s\t0\t0\t0\t0\nframe.revision\t%d\t0\t0\t0\t0\nframe.solved\t%d\t0\t0\t0\t0\nframe.clock\t%g\t0\t0\t0\t0\n",
+		d.f.win.Title(), d.f.doc.Revision(), solved, d.f.clock)
+	widgets.Dump(&b, d.f.win.Canvas())
+	if bytes.Equal(b.Bytes(), d.last) {
+		return
+	}
+	d.last = append(d.last[:0], b.Bytes()...)
+	tmp := d.path + ".new"
+	if os.WriteFile(tmp, b.Bytes(), 0o644) == nil {
+		os.Rename(tmp, d.path)
+	}
+}
+
+func (d *dumper) stop() {
+	if d.quit != nil {
+		close(d.quit)
+		d.quit = nil
+	}
+}

@@ -1,0 +1,358 @@
+// Package frame is the window: verdict line, job rail, duty strip and clock, menus
+// and dialogs around the stations. It shows and passes on; it computes nothing.
+package frame
+
+import (
+	"errors"
+	"math"
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/document"
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/audit/figures"
+	"barlitre/machines/units"
+)
+
+// Frame is the window of one open audit. Its methods run on the UI goroutine.
+type Frame struct {
+	app      fyne.App
+	win      fyne.Window
+	doc      *document.Document
+	settings settings
+	stations []station.Station
+	stale    []station.What // by station: what changed while it was not shown
+	current  int
+
+	clock    float64
+	duty     int
+	circuit  int
+	block    string
+	player   *player
+	laid     *audit.Report
+	laidOf   *audit.Solution
+	laidFor  units.System
+	solution *audit.Solution
+
+	verdict *widgets.Figure
+	rail    *rail
+	strip   *strip
+	status  *widget.Label
+	body    *fyne.Container
+	menu    menus
+	dumper  *dumper
+	closed  bool
+}
+
+var _ station.Context = (*Frame)(nil)
+
+// New makes the window around a document that it opens and closes itself. The
+// document tells it of changes through Notify, from any goroutine. stations are
+// the constructors of the stations in the order of the job.
+func New(app fyne.App, opt document.Options, stations ...func(station.Context) station.Station) *Frame {
+	f := &Frame{app: app, circuit: -1}
+	f.settings = readSettings(app.Preferences())
+	app.Settings().SetTheme(f.theme())
+	opt.Notify = func(e document.Event) { fyne.Do(func() { f.told(e) }) }
+	f.doc = document.New(opt)
+	f.win = app.NewWindow("Barlitre")
+	f.win.SetPadded(false)
+	f.win.SetMaster()
+	for _, make := range stations {
+		f.stations = append(f.stations, make(f))
+	}
+	f.build()
+	f.win.Resize(f.settings.size())
+	f.win.SetCloseIntercept(f.quit)
+	f.win.SetOnDropped(func(_ fyne.Position, uris []fyne.URI) {
+		if len(uris) > 0 {
+			f.leave(func() { f.open(uris[0].Path()) })
+		}
+	})
+	f.dumper = newDumper(f)
+	return f
+}
+
+// build lays the window out.
+func (f *Frame) build() {
+	f.stale = make([]station.What, len(f.stations))
+	f.verdict = f.newVerdict()
+	f.rail = newRail(f)
+	f.strip = newStrip(f)
+	f.status = widgets.Name(widget.NewLabel(""), "frame.status")
+	f.status.Truncation = fyne.TextTruncateEllipsis
+	f.body = container.NewStack()
+	for i, s := range f.stations {
+		f.stale[i] = station.Everything
+		content := s.Content()
+		content.Hide()
+		f.body.Add(content)
+	}
+	bottom := container.NewVBox(widget.NewSeparator(), f.strip.content, f.status)
+	top := container.NewVBox(f.verdict, widget.NewSeparator())
+	f.win.SetContent(container.NewBorder(top, bottom, f.rail.content, nil, f.body))
+	f.buildMenu()
+	f.shortcuts()
+	f.show(0)
+}
+
+// show brings a station to the front.
+func (f *Frame) show(i int) {
+	for j, o := range f.body.Objects {
+		if j != i {
+			o.Hide()
+		}
+	}
+	f.current = i
+	f.body.Objects[i].Show()
+	if w := f.stale[i]; w != 0 {
+		f.stale[i] = 0
+		f.stations[i].Changed(w)
+	}
+	f.body.Refresh()
+	f.rail.refresh()
+}
+
+// changed tells the station that is shown at once, the others when they are.
+func (f *Frame) changed(w station.What) {
+	for i := range f.stations {
+		f.stale[i] |= w
+	}
+	f.stale[f.current] = 0
+	f.stations[f.current].Changed(w)
+	if w.Has(station.Model | station.Solution | station.Settings) {
+		f.verdict.Refresh()
+		f.rail.refresh()
+		f.menu.update(f)
+		f.title()
+	}
+	if w.Has(station.Model | station.Settings | station.Selection) {
+		f.strip.reload()
+	}
+	if w.Has(station.Clock) {
+		f.strip.moved()
+	}
+}
+
+func (f *Frame) title() {
+	if t := f.doc.Title() + " - Barlitre"; f.win.Title() != t {
+		f.win.SetTitle(t)
+	}
+}
+
+// told handles an event of the document.
+func (f *Frame) told(e document.Event) {
+	if f.closed {
+		return
+	}
+	switch e.Kind {
+	case document.Opened:
+		f.reset()
+	case document.Edited:
+		f.keepInRange()
+		f.changed(station.Model)
+	case document.Solved:
+		f.solution, _ = f.doc.Solution()
+		f.changed(station.Solution)
+	case document.Solving:
+		f.verdict.Refresh()
+	default:
+		if e.Err != nil {
+			f.Say(e.Err.Error())
+		}
+		f.changed(station.Solution)
+	}
+}
+
+// reset goes to the start of what was just opened.
+func (f *Frame) reset() {
+	f.clock, f.duty, f.circuit, f.block = 0, 0, -1, ""
+	f.solution, _ = f.doc.Solution()
+	if file := f.doc.File(); file != nil && len(file.Duties) > 0 {
+		f.clock = f.firstMotion()
+	}
+	f.changed(station.Everything)
+}
+
+// keepInRange mends what an edit may have left pointing at nothing.
+func (f *Frame) keepInRange() {
+	file := f.doc.File()
+	if file == nil {
+		return
+	}
+	f.duty = max(0, min(f.duty, len(file.Duties)-1))
+	if f.circuit >= len(file.Circuits) || (f.circuit >= 0 && f.block != "" && file.Circuits[f.circuit].Block(f.block) == nil) {
+		f.circuit, f.block = -1, ""
+	}
+	from, to := f.span()
+	f.clock = math.Max(from, math.Min(to, f.clock))
+}
+
+// firstMotion is a time at which something moves, so that the first picture shows it.
+func (f *Frame) firstMotion() float64 {
+	d := f.doc.File().Duties[f.duty]
+	series := d.Series(f.doc.File().Axes, false)
+	best, at := 0.0, d.Time[0]
+	for k, t := range series.T {
+		sum := 0.0
+		for _, a := range series.Axes {
+			if a.Speed != nil && a.Load != nil {
+				sum += math.Abs(a.Speed[k] * a.Load[k])
+			}
+		}
+		if sum > best {
+			best, at = sum, t
+		}
+	}
+	return at
+}
+
+// span is the time of the duty at hand [s].
+func (f *Frame) span() (from, to float64) {
+	file := f.doc.File()
+	if file == nil || f.duty >= len(file.Duties) || len(file.Duties[f.duty].Time) == 0 {
+		return 0, 0
+	}
+	t := file.Duties[f.duty].Time
+	return t[0], t[len(t)-1]
+}
+
+// Doc returns the open audit.
+func (f *Frame) Doc() *document.Document { return f.doc }
+
+// Window returns the window.
+func (f *Frame) Window() fyne.Window { return f.win }
+
+// Clock returns the time into the duty at hand [s].
+func (f *Frame) Clock() float64 { return f.clock }
+
+// SetClock moves the clock, kept inside the duty.
+func (f *Frame) SetClock(t float64) {
+	from, to := f.span()
+	t = math.Max(from, math.Min(to, t))
+	if t != f.clock && !math.IsNaN(t) {
+		f.clock = t
+		f.changed(station.Clock)
+	}
+}
+
+// Duty returns the duty at hand.
+func (f *Frame) Duty() int { return f.duty }
+
+// SetDuty takes another duty at hand.
+func (f *Frame) SetDuty(i int) {
+	if file := f.doc.File(); file == nil || i == f.duty || i < 0 || i >= len(file.Duties) {
+		return
+	}
+	f.duty = i
+	f.clock = f.firstMotion()
+	f.changed(station.Selection | station.Clock)
+}
+
+// Selected returns the block at hand.
+func (f *Frame) Selected() (int, string) { return f.circuit, f.block }
+
+// Select takes another block at hand.
+func (f *Frame) Select(circuit int, block string) {
+	if circuit != f.circuit || block != f.block {
+		f.circuit, f.block = circuit, block
+		f.changed(station.Selection)
+	}
+}
+
+// Solution returns the last finished solution.
+func (f *Frame) Solution() *audit.Solution { return f.solution }
+
+// Report lays the solution out in the user's units, once for each.
+func (f *Frame) Report() *audit.Report {
+	if f.solution == nil {
+		return nil
+	}
+	if f.laid == nil || f.laidOf != f.solution || f.laidFor != f.settings.system {
+		f.laid, f.laidOf, f.laidFor = f.solution.Report(f.settings.system), f.solution, f.settings.system
+	}
+	return f.laid
+}
+
+// System returns the user's family of units.
+func (f *Frame) System() units.System { return f.settings.system }
+
+// Text writes a quantity as the user reads it.
+func (f *Frame) Text(si float64, d units.Dim, digits int) string {
+	return f.Local(units.Format(si, units.Preferred(d, f.settings.system), digits))
+}
+
+// Local puts the user's decimal sign into a text: a point between two digits.
+func (f *Frame) Local(text string) string {
+	if !f.settings.comma {
+		return text
+	}
+	b := []rune(text)
+	for i := 1; i+1 < len(b); i++ {
+		if b[i] == '.' && digit(b[i-1]) && digit(b[i+1]) {
+			b[i] = ','
+		}
+	}
+	return string(b)
+}
+
+func digit(r rune) bool { return r >= '0' && r <= '9' }
+
+// Palette returns the colours of the theme.
+func (f *Frame) Palette() figures.Palette { return f.theme().Palette() }
+
+func (f *Frame) theme() widgets.Theme {
+	return widgets.Theme{Dark: f.settings.dark, Scale: f.settings.scale}
+}
+
+// Go shows a station by name.
+func (f *Frame) Go(name string) {
+	for i, s := range f.stations {
+		if s.Name() == name {
+			f.show(i)
+		}
+	}
+}
+
+// Say shows a short message below the strip.
+func (f *Frame) Say(text string) {
+	f.status.Importance = widget.MediumImportance
+	f.status.SetText(text)
+}
+
+// Fail shows what went wrong, where it cannot be missed.
+func (f *Frame) Fail(err error) {
+	if err == nil {
+		return
+	}
+	text := err.Error()
+	var fault *document.Fault
+	if errors.As(err, &fault) {
+		text = fault.Error()
+	}
+	f.status.Importance = widget.DangerImportance
+	f.status.SetText("⚠ " + strings.ReplaceAll(text, "\n", " "))
+	f.tellFailure(text)
+}
+
+// Show opens the window and returns when it is closed.
+func (f *Frame) Show() {
+	f.win.Show()
+	f.app.Run()
+}
+
+// Open opens what the program was started with: a file, or the first sample.
+func (f *Frame) Open(path string) {
+	if path != "" {
+		f.open(path)
+	} else {
+		f.openSample(firstSample)
+		f.Say("Sample, invented data. File > New starts an audit of your own; click a block to change it, and the verdict follows.")
+	}
+	f.offerRecovery()
+}

@@ -1,0 +1,172 @@
+package frame
+
+import (
+	"fmt"
+	"path/filepath"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/driver/desktop"
+
+	"barlitre/app/station"
+	"barlitre/machines/units"
+	"barlitre/samples"
+)
+
+// firstSample is what the window opens with.
+const firstSample = "baling-press.yaml"
+
+// menus keeps the items that change.
+type menus struct {
+	main          *fyne.MainMenu
+	undo, redo    *fyne.MenuItem
+	recent, save  *fyne.MenuItem
+	settingsItems []settingItem
+	said          string
+}
+
+// settingItem is a menu item that is checked while a setting has its value.
+type settingItem struct {
+	item *fyne.MenuItem
+	on   func() bool
+}
+
+func (f *Frame) buildMenu() {
+	key := func(name fyne.KeyName, more fyne.KeyModifier) fyne.Shortcut {
+		return &desktop.CustomShortcut{KeyName: name, Modifier: fyne.KeyModifierShortcutDefault | more}
+	}
+	item := func(text string, s fyne.Shortcut, do func()) *fyne.MenuItem {
+		m := fyne.NewMenuItem(text, do)
+		m.Shortcut = s
+		return m
+	}
+	m := &f.menu
+	start := fyne.NewMenuItem("New from sample", nil)
+	start.ChildMenu = fyne.NewMenu("")
+	for _, name := range samples.Names() {
+		start.ChildMenu.Items = append(start.ChildMenu.Items, fyne.NewMenuItem(sampleTitle(name), func() { f.leave(func() { f.openSample(name) }) }))
+	}
+	m.recent = fyne.NewMenuItem("Open recent", nil)
+	m.recent.ChildMenu = fyne.NewMenu("")
+	m.save = item("Save", key(fyne.KeyS, 0), func() { f.save(nil) })
+	m.undo = item("Undo", key(fyne.KeyZ, 0), func() { f.undoOr(&fyne.ShortcutUndo{}, f.doc.Undo) })
+	m.redo = item("Redo", key(fyne.KeyZ, fyne.KeyModifierShift), func() { f.undoOr(&fyne.ShortcutRedo{}, f.doc.Redo) })
+	quit := item("Quit", key(fyne.KeyQ, 0), f.quit)
+	quit.IsQuit = true
+	file := fyne.NewMenu("File", start,
+		item("Open…", key(fyne.KeyO, 0), func() { f.leave(f.askOpen) }), m.recent, fyne.NewMenuItemSeparator(),
+		m.save, item("Save as…", key(fyne.KeyS, fyne.KeyModifierShift), func() { f.saveAs(nil) }), fyne.NewMenuItemSeparator(), quit)
+	edit := fyne.NewMenu("Edit", m.undo, m.redo)
+	job := fyne.NewMenu("Job")
+	for i, s := range f.stations {
+		job.Items = append(job.Items, item(s.Name(), key(stationKey(i), 0), func() { f.show(i) }))
+	}
+	view := fyne.NewMenu("View")
+	setting := func(text string, on func() bool, change func()) {
+		it := fyne.NewMenuItem(text, func() {
+			change()
+			f.applySettings()
+		})
+		m.settingsItems = append(m.settingsItems, settingItem{it, on})
+		view.Items = append(view.Items, it)
+	}
+	setting("Light", func() bool { return !f.settings.dark }, func() { f.settings.dark = false })
+	setting("Dark", func() bool { return f.settings.dark }, func() { f.settings.dark = true })
+	view.Items = append(view.Items, fyne.NewMenuItemSeparator())
+	for _, k := range []float32{1, 1.25, 1.5, 2} {
+		setting(fmt.Sprintf("Scale %.0f %%", 100*k), func() bool { return f.settings.scale == k }, func() { f.settings.scale = k })
+	}
+	view.Items = append(view.Items, fyne.NewMenuItemSeparator())
+	for _, u := range []struct {
+		text   string
+		system units.System
+	}{{"Metric units", units.Metric}, {"US units", units.US}, {"SI units", units.SI}} {
+		setting(u.text, func() bool { return f.settings.system == u.system }, func() { f.settings.system = u.system })
+	}
+	view.Items = append(view.Items, fyne.NewMenuItemSeparator())
+	setting("Decimal comma", func() bool { return f.settings.comma }, func() { f.settings.comma = !f.settings.comma })
+	help := fyne.NewMenu("Help", fyne.NewMenuItem("This station (F1)", f.help), fyne.NewMenuItem("About Barlitre", f.about))
+	m.main = fyne.NewMainMenu(file, edit, job, view, help)
+	m.update(f)
+	f.win.SetMainMenu(m.main)
+}
+
+func sampleTitle(name string) string {
+	switch name {
+	case "baling-press.yaml":
+		return "Scrap-baling press: throttled, against a pump-controlled ram"
+	case "quayside-winch.yaml":
+		return "Quayside winch: valve and counterbalance, against a closed circuit"
+	}
+	return name
+}
+
+// update brings names, checks and the list of recent files up to date.
+func (m *menus) update(f *Frame) {
+	m.undo.Label, m.undo.Disabled = "Undo", f.doc.UndoName() == ""
+	if n := f.doc.UndoName(); n != "" {
+		m.undo.Label = "Undo: " + n
+	}
+	m.redo.Label, m.redo.Disabled = "Redo", f.doc.RedoName() == ""
+	if n := f.doc.RedoName(); n != "" {
+		m.redo.Label = "Redo: " + n
+	}
+	for _, s := range m.settingsItems {
+		s.item.Checked = s.on()
+	}
+	recent := f.doc.Recent()
+	said := fmt.Sprint(m.undo.Label, m.redo.Label, recent, f.settings)
+	if said == m.said {
+		return // a refresh of the menu closes it
+	}
+	m.said = said
+	m.recent.ChildMenu.Items = nil
+	for _, path := range recent {
+		m.recent.ChildMenu.Items = append(m.recent.ChildMenu.Items, fyne.NewMenuItem(filepath.Base(path)+"  ("+filepath.Dir(path)+")", func() { f.leave(func() { f.open(path) }) }))
+	}
+	m.recent.Disabled = len(recent) == 0
+	if m.main != nil {
+		m.main.Refresh()
+	}
+}
+
+// undoOr undoes text in a field that has the focus, else the last edit.
+func (f *Frame) undoOr(s fyne.Shortcut, do func() (string, bool)) {
+	if e, ok := f.win.Canvas().Focused().(fyne.Shortcutable); ok {
+		if t, isText := e.(interface{ SelectedText() string }); isText && t != nil && f.typing() {
+			e.TypedShortcut(s)
+			return
+		}
+	}
+	if name, ok := do(); ok {
+		f.Say(name)
+	}
+}
+
+// typing reports whether the field with the focus holds text that is not in the model yet.
+func (f *Frame) typing() bool {
+	field, ok := f.win.Canvas().Focused().(interface{ Typing() bool })
+	return ok && field.Typing()
+}
+
+// shortcuts are keys beside the menu.
+func (f *Frame) shortcuts() {
+	f.win.Canvas().SetOnTypedKey(func(k *fyne.KeyEvent) {
+		switch k.Name {
+		case fyne.KeyF1:
+			f.help()
+		case fyne.KeyEscape:
+			f.player.stop()
+		}
+	})
+	f.win.Canvas().AddShortcut(&desktop.CustomShortcut{KeyName: fyne.KeyY, Modifier: fyne.KeyModifierShortcutDefault}, func(fyne.Shortcut) {
+		f.undoOr(&fyne.ShortcutRedo{}, f.doc.Redo)
+	})
+}
+
+// applySettings brings a changed setting to everything that is drawn.
+func (f *Frame) applySettings() {
+	f.settings.write(f.app.Preferences())
+	f.app.Settings().SetTheme(f.theme())
+	f.changed(station.Settings)
+	f.win.Content().Refresh()
+}

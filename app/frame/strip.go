@@ -1,0 +1,299 @@
+package frame
+
+import (
+	"fmt"
+	"image/color"
+	"math"
+	"time"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/driver/desktop"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/widgets"
+	"barlitre/audit/figures"
+	"barlitre/audit/pen"
+	"barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+const stripHeight = 150
+
+// strip shows the tracks of the duty at hand over time, and the clock.
+type strip struct {
+	f       *Frame
+	figure  *clockFigure
+	play    *widget.Button
+	picker  *widget.Select
+	plot    figures.Plot
+	area    figures.PlotArea
+	content fyne.CanvasObject
+	own     bool // the picker is being set by the program
+}
+
+func newStrip(f *Frame) *strip {
+	s := &strip{f: f}
+	s.figure = newClockFigure(s)
+	widgets.Name(s.figure, "strip")
+	s.play = widgets.Name(widget.NewButton("Play", s.toggle), "strip.play")
+	s.picker = widgets.Name(widget.NewSelect(nil, func(name string) {
+		if s.own {
+			return
+		}
+		for i, d := range f.doc.File().Duties {
+			if d.Name == name {
+				f.SetDuty(i)
+			}
+		}
+	}), "strip.duty")
+	f.player = &player{f: f}
+	side := container.NewVBox(s.picker, s.play)
+	s.content = container.NewBorder(nil, nil, container.NewPadded(side), nil, s.figure)
+	return s
+}
+
+func (s *strip) toggle() {
+	if s.f.player.running() {
+		s.f.player.stop()
+	} else {
+		s.f.player.start()
+	}
+}
+
+// reload takes the duty at hand.
+func (s *strip) reload() {
+	file := s.f.doc.File()
+	if file == nil || s.f.duty >= len(file.Duties) {
+		s.plot = figures.Plot{}
+		s.figure.Refresh()
+		return
+	}
+	var names []string
+	for _, d := range file.Duties {
+		names = append(names, d.Name)
+	}
+	d := file.Duties[s.f.duty]
+	s.own = true
+	s.picker.SetOptions(names)
+	s.picker.SetSelected(d.Name)
+	s.own = false
+	s.plot = s.lanes(d, file.Axes)
+	s.figure.Refresh()
+}
+
+// lanes puts tracks of one quantity and kind of axis into one lane.
+func (s *strip) lanes(d *duty.Duty, axes []duty.Axis) figures.Plot {
+	plot := figures.Plot{Axis: "time", AxisUnit: "s"}
+	if len(d.Time) > 0 {
+		plot.From, plot.To = d.Time[0], d.Time[len(d.Time)-1]
+	}
+	kind := map[string]duty.AxisKind{}
+	for _, a := range axes {
+		kind[a.Name] = a.Kind
+	}
+	lane := map[string]int{}
+	roles := []figures.Role{figures.RoleInk, figures.RoleGain, figures.RoleBar}
+	for _, tr := range d.Tracks {
+		dim := trackDim(tr.What, kind[tr.Of])
+		u := units.Preferred(dim, s.f.settings.system)
+		key := fmt.Sprint(tr.What, dim)
+		i, ok := lane[key]
+		if !ok {
+			i = len(plot.Lanes)
+			lane[key] = i
+			plot.Lanes = append(plot.Lanes, figures.Lane{Title: tr.Of + " " + tr.What.String(), Unit: u.Label(), Zero: true})
+		}
+		y := make([]float64, len(tr.Values))
+		for k, v := range tr.Values {
+			y[k] = u.FromSI(v)
+		}
+		n := len(plot.Lanes[i].Series)
+		plot.Lanes[i].Series = append(plot.Lanes[i].Series, figures.Series{Name: tr.Of, X: d.Time, Y: y, Role: roles[n%len(roles)], Dash: n > 0})
+		if n > 0 {
+			plot.Lanes[i].Title = tr.What.String()
+		}
+	}
+	for i, p := range d.Phases {
+		to := plot.To
+		if i+1 < len(d.Phases) {
+			to = d.Phases[i+1].From
+		}
+		plot.Phases = append(plot.Phases, figures.Phase{Name: p.Name, From: p.From, To: to})
+	}
+	return plot
+}
+
+func trackDim(w duty.What, k duty.AxisKind) units.Dim {
+	switch {
+	case w == duty.Command:
+		return units.Ratio
+	case w == duty.Load && k == duty.Rotary:
+		return units.Torque
+	case w == duty.Load:
+		return units.Force
+	case w == duty.Position && k == duty.Rotary:
+		return units.Angle
+	case w == duty.Position:
+		return units.Length
+	case k == duty.Rotary:
+		return units.AngularSpeed
+	}
+	return units.Velocity
+}
+
+func (s *strip) moved() { s.figure.Refresh() }
+
+// draw draws the tracks and the clock with the values at it.
+func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
+	pal := s.f.Palette()
+	pen.Rect(p, 0, 0, w, h, pal.Card, pen.Stroke{})
+	if len(s.plot.Lanes) == 0 {
+		p.Text(pen.Pt{X: 16, Y: h / 2}, "The duty has no tracks. Give the axes motion and load on the Duty station.", 12.5, pal.Secondary, pen.Left, false)
+		return nil
+	}
+	p.Push(6, 2, 1)
+	s.area = s.plot.Draw(p, w-20, h-4, pal)
+	p.Pop()
+	x := 6 + s.area.XAt(s.f.clock)
+	p.Polyline([]pen.Pt{{X: x, Y: 14}, {X: x, Y: h - 22}}, false, pal.Danger, pen.Stroke{W: 1.4, C: pal.Danger})
+	p.Polyline([]pen.Pt{{X: x - 5, Y: 8}, {X: x + 5, Y: 8}, {X: x, Y: 16}}, true, pal.Danger, pen.Stroke{})
+	text := s.f.Local(units.Number(s.f.clock, 4)) + " s"
+	tw := p.TextWidth(text, 11, true) + 10
+	bx := x + 8
+	if bx+tw > w-4 {
+		bx = x - 8 - tw
+	}
+	pen.RoundRect(p, bx, 2, tw, 16, 3, pal.Ground, pen.Stroke{W: 1, C: pal.Edge})
+	p.Text(pen.Pt{X: bx + 5, Y: 14}, text, 11, pal.Ink, pen.Left, true)
+	return []widgets.Part{
+		{Name: "tracks", Text: fmt.Sprint(len(s.plot.Lanes)), X: 6 + s.area.X, Y: 0, W: s.area.W, H: h},
+		{Name: "clock", Text: text, X: x - 6, Y: 0, W: 12, H: h, Click: true},
+	}
+}
+
+// clockFigure is the strip's figure: the clock follows click, drag and arrow keys.
+type clockFigure struct {
+	*widgets.Figure
+	s     *strip
+	focus bool
+}
+
+func newClockFigure(s *strip) *clockFigure {
+	c := &clockFigure{s: s}
+	c.Figure = widgets.NewFigure(fyne.NewSize(400, stripHeight), func(p pen.Pen, w, h float64) []widgets.Part {
+		parts := s.draw(p, w, h)
+		if c.focus {
+			pen.Rect(p, 1, 1, w-2, h-2, color.NRGBA{}, pen.Stroke{W: 2, C: s.f.Palette().Gain})
+		}
+		return parts
+	})
+	c.ExtendBaseWidget(c)
+	return c
+}
+
+func (c *clockFigure) to(x float32) {
+	c.s.f.player.stop()
+	c.s.f.SetClock(c.s.area.At(float64(x/widgets.Scale()) - 6))
+}
+
+// MouseDown sets the clock and takes the focus.
+func (c *clockFigure) MouseDown(ev *desktop.MouseEvent) {
+	c.s.f.win.Canvas().Focus(c)
+	if ev.Button == desktop.MouseButtonPrimary {
+		c.to(ev.Position.X)
+	}
+}
+
+// MouseUp ends a press.
+func (c *clockFigure) MouseUp(*desktop.MouseEvent) {}
+
+// Dragged moves the clock along.
+func (c *clockFigure) Dragged(ev *fyne.DragEvent) { c.to(ev.Position.X) }
+
+// DragEnd ends a drag.
+func (c *clockFigure) DragEnd() {}
+
+// FocusGained and FocusLost show the focus.
+func (c *clockFigure) FocusGained()   { c.focus = true; c.Refresh() }
+func (c *clockFigure) FocusLost()     { c.focus = false; c.Refresh() }
+func (c *clockFigure) TypedRune(rune) {}
+
+// TypedKey steps the clock: a hundredth of the cycle, with page keys a tenth.
+func (c *clockFigure) TypedKey(k *fyne.KeyEvent) {
+	f := c.s.f
+	from, to := f.span()
+	step := (to - from) / 100
+	switch k.Name {
+	case fyne.KeyLeft:
+		f.SetClock(f.clock - step)
+	case fyne.KeyRight:
+		f.SetClock(f.clock + step)
+	case fyne.KeyPageUp:
+		f.SetClock(f.clock - 10*step)
+	case fyne.KeyPageDown:
+		f.SetClock(f.clock + 10*step)
+	case fyne.KeyHome:
+		f.SetClock(from)
+	case fyne.KeyEnd:
+		f.SetClock(to)
+	case fyne.KeySpace:
+		c.s.toggle()
+	}
+}
+
+// player lets the clock run: a cycle in its own time, but in no less than 8 s and
+// no more than a minute.
+type player struct {
+	f    *Frame
+	quit chan struct{}
+}
+
+const framePeriod = 33 * time.Millisecond
+
+func (p *player) running() bool { return p.quit != nil }
+
+func (p *player) start() {
+	from, to := p.f.span()
+	if to <= from {
+		return
+	}
+	quit := make(chan struct{})
+	p.quit = quit
+	p.f.strip.play.SetText("Pause")
+	speed := (to - from) / math.Max(8, math.Min(60, to-from))
+	go func() {
+		tick := time.NewTicker(framePeriod)
+		defer tick.Stop()
+		last := time.Now()
+		for {
+			select {
+			case <-quit:
+				return
+			case <-tick.C:
+			}
+			now := time.Now()
+			dt := now.Sub(last).Seconds()
+			last = now
+			fyne.DoAndWait(func() { // a slow screen drops steps instead of piling them up
+				if p.quit != quit {
+					return
+				}
+				from, to := p.f.span()
+				t := p.f.clock + dt*speed
+				if t >= to {
+					t = from
+				}
+				p.f.SetClock(t)
+			})
+		}
+	}()
+}
+
+func (p *player) stop() {
+	if p.quit != nil {
+		close(p.quit)
+		p.quit = nil
+		p.f.strip.play.SetText("Play")
+	}
+}

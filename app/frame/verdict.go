@@ -1,0 +1,192 @@
+package frame
+
+import (
+	"fmt"
+	"strings"
+
+	"fyne.io/fyne/v2"
+
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/audit/pen"
+)
+
+const verdictHeight = 54
+
+// newVerdict makes the verdict line. A field without a computed number is not
+// drawn, and fields drop from the right when there is no room.
+func (f *Frame) newVerdict() *widgets.Figure {
+	v := widgets.Name(widgets.NewFigure(fyne.NewSize(500, verdictHeight), f.drawVerdict), "verdict")
+	v.Tapped = func(p widgets.Part, _, _ float64) {
+		for _, field := range f.verdictFields() {
+			if field.name == p.Name && field.figure.Calculation.Formula != "" {
+				f.Explain(field.figure)
+			}
+		}
+	}
+	return v
+}
+
+// verdictField is one field: a figure before and after, or alone.
+type verdictField struct {
+	name, title           string
+	before, after, beside string
+	figure                audit.Figure
+}
+
+// verdictFields takes the fields from the report's decision on the first proposal.
+func (f *Frame) verdictFields() []verdictField {
+	r := f.Report()
+	if r == nil {
+		return nil
+	}
+	if len(r.Decisions) == 0 {
+		return f.aloneFields(r)
+	}
+	d := r.Decisions[f.proposal(r)]
+	var out []verdictField
+	row := func(name, title, of string) {
+		for _, x := range d.Rows {
+			if x.Name == of && x.Before.Text != "" && x.After.Text != "" && x.After.Text != "n/a" {
+				out = append(out, verdictField{name, title, x.Before.Text, x.After.Text, "", x.After})
+			}
+		}
+	}
+	single := func(name, title, of string) {
+		for _, x := range d.Outcome {
+			if x.Name == of && x.Text != "" && x.Text != "n/a" {
+				text, beside, _ := strings.Cut(x.Text, " (")
+				out = append(out, verdictField{name, title, "", text, strings.TrimSuffix(beside, ")"), x})
+			}
+		}
+	}
+	row("energy", "Energy a year", "energy drawn a year")
+	single("saving", "Saving", "saved share")
+	row("heat", "Heat to the oil", "mean heat to the oil")
+	row("cooler", f.coolerTitle(), "cooler for it")
+	single("payback", "Payback", "simple payback")
+	return out
+}
+
+// proposal is the index of the decision shown: the one whose circuit is selected, else the first.
+func (f *Frame) proposal(r *audit.Report) int {
+	if file := f.doc.File(); file != nil && f.circuit > 0 && f.circuit < len(file.Circuits) {
+		for i, d := range r.Decisions {
+			if d.Proposal == file.Circuits[f.circuit].Name {
+				return i
+			}
+		}
+	}
+	return 0
+}
+
+func (f *Frame) coolerTitle() string {
+	if s := f.solution; s != nil && s.Oil > 0 && s.Air > 0 {
+		return f.Local(fmt.Sprintf("Cooler at %.0f °C / %.0f °C", s.Oil-273.15, s.Air-273.15))
+	}
+	return "Cooler"
+}
+
+// aloneFields are those of a circuit without a proposal.
+func (f *Frame) aloneFields(r *audit.Report) []verdictField {
+	var out []verdictField
+	for _, c := range r.Circuits {
+		for _, x := range append(append([]audit.Figure(nil), c.Year...), c.Heat...) {
+			switch x.Name {
+			case "drawn a year":
+				out = append(out, verdictField{"energy", "Energy a year", "", x.Text, "", x})
+			case "mean heat to the oil, all running hours":
+				out = append(out, verdictField{"heat", "Heat to the oil", "", x.Text, "", x})
+			case "cooler for it, all running hours":
+				out = append(out, verdictField{"cooler", f.coolerTitle(), "", x.Text, "", x})
+			}
+		}
+		break
+	}
+	return out
+}
+
+// stateText says whether the figures belong to what is on the sheet.
+func (f *Frame) stateText() (text string, good bool) {
+	running, done, total := f.doc.Solving()
+	switch {
+	case running && total > 0 && done > 0:
+		return fmt.Sprintf("solving %d %%", 100*done/total), false
+	case running:
+		return "solving", false
+	case !f.doc.Current() && f.solution != nil:
+		return "out of date", false
+	case f.solution == nil:
+		return "not solved", false
+	}
+	for _, c := range f.solution.Circuits {
+		for _, d := range c.Duties {
+			if d.Balance == nil {
+				return c.Circuit.Name + " cannot be solved", false
+			}
+			if d.Certificate.Unbalanced > 0 {
+				return "steps left unbalanced", false
+			}
+		}
+	}
+	return "up to date", true
+}
+
+func (f *Frame) drawVerdict(p pen.Pen, w, h float64) []widgets.Part {
+	pal := f.Palette()
+	pen.Rect(p, 0, 0, w, h, pal.Card, pen.Stroke{})
+	p.Text(pen.Pt{X: 14, Y: 32}, "Barlitre", 14, pal.Ink, pen.Left, true)
+	var parts []widgets.Part
+	state, good := f.stateText()
+	sw := p.TextWidth(state, 11, false)
+	dot := pal.Heat
+	if good {
+		dot = pal.Gain
+	}
+	p.Circle(pen.Pt{X: w - sw - 26, Y: h/2 - 1}, 4, dot, pen.Stroke{})
+	p.Text(pen.Pt{X: w - 16, Y: h/2 + 3}, state, 11, pal.Secondary, pen.Right, false)
+	parts = append(parts, widgets.Part{Name: "state", Text: state, X: w - sw - 32, Y: 0, W: sw + 32, H: h})
+	x, room := 92.0, w-sw-52
+	for _, v := range f.verdictFields() {
+		before, after, beside := f.Local(v.before), f.Local(v.after), f.Local(v.beside)
+		if before != "" {
+			before = withoutUnit(before, after)
+		}
+		wb, wa, ws := p.TextWidth(before, 16, false), p.TextWidth(after, 16, true), p.TextWidth(beside, 11, false)
+		width := wa
+		if before != "" {
+			width += wb + 26
+		}
+		if beside != "" {
+			width += ws + 8
+		}
+		width = max(width, p.TextWidth(v.title, 11, false))
+		if x+width > room {
+			break // fields drop from the right
+		}
+		p.Text(pen.Pt{X: x, Y: 19}, v.title, 11, pal.Secondary, pen.Left, false)
+		at := x
+		if before != "" {
+			p.Text(pen.Pt{X: at, Y: 41}, before, 16, pal.Secondary, pen.Left, false)
+			p.Text(pen.Pt{X: at + wb + 7, Y: 41}, "→", 12, pal.Secondary, pen.Left, false)
+			at += wb + 26
+		}
+		p.Text(pen.Pt{X: at, Y: 41}, after, 16, pal.Gain, pen.Left, true)
+		if beside != "" {
+			p.Text(pen.Pt{X: at + wa + 8, Y: 41}, beside, 11, pal.Secondary, pen.Left, false)
+		}
+		text := strings.TrimSpace(strings.TrimPrefix(before+" → "+after+" "+beside, " → "))
+		parts = append(parts, widgets.Part{Name: v.name, Text: text, X: x, Y: 0, W: width, H: h, Click: true})
+		x += width + 28
+	}
+	return parts
+}
+
+// withoutUnit drops the unit of a number that stands before another in the same unit.
+func withoutUnit(before, after string) string {
+	i, j := strings.LastIndexAny(before, "\u202f\u00a0 "), strings.LastIndexAny(after, "\u202f\u00a0 ")
+	if i > 0 && j > 0 && strings.TrimLeft(before[i:], "\u202f\u00a0 ") == strings.TrimLeft(after[j:], "\u202f\u00a0 ") {
+		return strings.TrimRight(before[:i], "\u202f\u00a0 ")
+	}
+	return before
+}

@@ -1,0 +1,110 @@
+package figures
+
+import (
+	"math"
+
+	"barlitre/circuit/drawing"
+)
+
+// netNow is what a line carries at an instant.
+type netNow struct {
+	pressure float64   // Pa, NaN where the state has none
+	into     []float64 // m³/s, into the block at each end
+	known    bool      // there is a state
+}
+
+// flows reads pressures and flows of all lines. A tank takes what the other ends leave
+// over.
+func (s *Sheet) flows(st *SheetState) []netNow {
+	out := make([]netNow, len(s.nets))
+	for i := range s.nets {
+		n := &s.nets[i]
+		now := netNow{pressure: math.NaN(), into: make([]float64, len(n.ends)), known: st != nil}
+		sum := 0.0
+		for k, e := range n.ends {
+			name := s.parts[e.part].id + "." + e.port
+			if v, ok := st.Signal(name + ".p"); ok && finite(v) && math.IsNaN(now.pressure) {
+				now.pressure = v
+			}
+			if v, ok := st.Signal(name + ".q"); ok && finite(v) {
+				now.into[k] = v
+				sum += v
+			}
+		}
+		if n.tank >= 0 {
+			now.into[n.tank] -= sum
+			if st != nil && math.IsNaN(now.pressure) {
+				now.pressure = 0
+			}
+		}
+		out[i] = now
+	}
+	return out
+}
+
+// along returns the flow along the points of a stretch [m³/s].
+func (st *stretch) along(n netNow) float64 {
+	sum := 0.0
+	for k, share := range st.share {
+		if share != 0 {
+			sum += share * n.into[k]
+		}
+	}
+	return sum
+}
+
+// chevron is a mark of direction: its tip and the direction it points in.
+type chevron struct {
+	tip, dir drawing.Pt
+	width    float64 // of the line
+}
+
+// Spacing of chevrons along a straight piece [M].
+const (
+	chevronEvery = 11.0
+	chevronLeast = 2.6 // shorter pieces carry none
+	chevronClear = 1.6 // from crossings
+)
+
+// chevrons returns the marks along a stretch with flow q along its points. The longest
+// piece always has one, other pieces if they are long enough.
+func (s *Sheet) chevrons(st *stretch, q, width float64) []chevron {
+	var out []chevron
+	longest := 0.0
+	for i := 1; i < len(st.pts); i++ {
+		longest = math.Max(longest, distance(st.pts[i-1], st.pts[i]))
+	}
+	for i := 1; i < len(st.pts); i++ {
+		a, b := st.pts[i-1], st.pts[i]
+		length := distance(a, b)
+		if length < chevronLeast && length < longest {
+			continue
+		}
+		if q < 0 {
+			a, b = b, a
+		}
+		dir := drawing.Pt{X: (b.X - a.X) / length, Y: (b.Y - a.Y) / length}
+		n := math.Max(1, math.Round(length/chevronEvery))
+		for k := 0.0; k < n; k++ {
+			at := (k+0.5)*length/n + 0.35
+			tip := drawing.Pt{X: a.X + dir.X*at, Y: a.Y + dir.Y*at}
+			if s.nearCrossing(tip) {
+				continue
+			}
+			out = append(out, chevron{tip, dir, width})
+		}
+	}
+	return out
+}
+
+func (s *Sheet) nearCrossing(p drawing.Pt) bool {
+	for _, c := range s.crossings {
+		if distance(c.At, p) < chevronClear {
+			return true
+		}
+	}
+	return false
+}
+
+// distance along the axes, as lines run.
+func distance(a, b drawing.Pt) float64 { return math.Abs(a.X-b.X) + math.Abs(a.Y-b.Y) }

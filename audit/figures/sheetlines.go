@@ -1,0 +1,214 @@
+package figures
+
+import (
+	"image/color"
+	"math"
+
+	"barlitre/audit/pen"
+	"barlitre/circuit/drawing"
+)
+
+// widthOf is the width of a line with flow q: in proportion to its root, so that the
+// area of the line is to the flow as with round pipes of one velocity.
+func (d *sheetDrawing) widthOf(q float64) float64 {
+	if d.st == nil {
+		return symbolLine
+	}
+	return math.Max(lineThin, lineWidest*math.Sqrt(math.Min(1, ratio(math.Abs(q), d.scales.Flow))))
+}
+
+// tintOf is the colour of a line: that of its pressure, ink without a state.
+func (d *sheetDrawing) tintOf(n netNow) color.NRGBA {
+	if !n.known {
+		return d.pal.Ink
+	}
+	if math.IsNaN(n.pressure) {
+		return d.pal.Pressure(math.NaN())
+	}
+	return d.pal.Pressure(ratio(n.pressure, d.scales.Pressure))
+}
+
+// lines draws lines, the gaps where they cross, dots and chevrons.
+func (d *sheetDrawing) lines() {
+	for i := range d.stretches {
+		if st := &d.stretches[i]; d.opt.Lines[st.net] {
+			d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1, C: faded(d.pal.Gain, 90)})
+		}
+	}
+	for i := range d.stretches {
+		d.line(&d.stretches[i])
+	}
+	d.drawStubs()
+	for _, c := range d.crossings {
+		d.crossing(c)
+	}
+	for i := range d.nets {
+		d.dots(i)
+	}
+	for i := range d.stretches {
+		st := &d.stretches[i]
+		if q := st.along(d.now[st.net]); d.flowing(q) {
+			for _, c := range d.chevrons(st, q, d.widthOf(q)) {
+				d.chevron(c, d.tintOf(d.now[st.net]))
+			}
+		}
+	}
+}
+
+// flowing tells whether a flow is large enough to be shown.
+func (d *sheetDrawing) flowing(q float64) bool {
+	return d.st != nil && ratio(math.Abs(q), d.scales.Flow) >= flowShown
+}
+
+// line draws a stretch.
+func (d *sheetDrawing) line(st *stretch) {
+	switch d.nets[st.net].kind {
+	case drawing.Shaft, drawing.Rod:
+		d.shaft(st.pts)
+	case drawing.Electric:
+		d.electric(st)
+	default:
+		d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, d.stroke(st))
+	}
+}
+
+func (d *sheetDrawing) stroke(st *stretch) pen.Stroke {
+	w := d.widthOf(st.along(d.now[st.net]))
+	if st.pilot {
+		w = lineThin
+	}
+	return dashed(w, d.tintOf(d.now[st.net]), st.style)
+}
+
+// dashed is a stroke of a style; the dashes of a wide line are longer.
+func dashed(w float64, c color.NRGBA, style drawing.Style) pen.Stroke {
+	out := pen.Stroke{W: w, C: c}
+	for _, l := range style.Dashes() {
+		out.Dash = append(out.Dash, l*math.Max(1, w/0.35))
+	}
+	return out
+}
+
+// shaft draws a double line.
+func (d *sheetDrawing) shaft(pts []drawing.Pt) {
+	ink := pen.Stroke{W: symbolLine, C: d.pal.Ink}
+	if len(pts) > 2 { // round corners: a wide line with a narrower one on it
+		d.p.Polyline(penPts(pts), false, color.NRGBA{}, pen.Stroke{W: 1 + symbolLine, C: d.pal.Ink})
+		d.p.Polyline(penPts(pts), false, color.NRGBA{}, pen.Stroke{W: 1 - symbolLine, C: d.pal.Card})
+		return
+	}
+	a, b := pts[0], pts[1]
+	nx, ny := 0.5, 0.0
+	if a.Y == b.Y {
+		nx, ny = 0, 0.5
+	}
+	pen.Line(d.p, pen.Pt{X: a.X + nx, Y: a.Y + ny}, pen.Pt{X: b.X + nx, Y: b.Y + ny}, ink)
+	pen.Line(d.p, pen.Pt{X: a.X - nx, Y: a.Y - ny}, pen.Pt{X: b.X - nx, Y: b.Y - ny}, ink)
+}
+
+// electric draws a thin line with three strokes across it, for three phases.
+func (d *sheetDrawing) electric(st *stretch) {
+	thin := pen.Stroke{W: 0.16, C: d.pal.Ink}
+	d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, thin)
+	best := 1
+	for i := 1; i < len(st.pts); i++ {
+		if distance(st.pts[i-1], st.pts[i]) > distance(st.pts[best-1], st.pts[best]) {
+			best = i
+		}
+	}
+	a, b := st.pts[best-1], st.pts[best]
+	length := distance(a, b)
+	if length == 0 {
+		return
+	}
+	ux, uy := (b.X-a.X)/length, (b.Y-a.Y)/length
+	for k := -1.0; k <= 1; k++ {
+		x, y := (a.X+b.X)/2+0.5*k*ux, (a.Y+b.Y)/2+0.5*k*uy
+		pen.Line(d.p, pen.Pt{X: x - 0.35*ux + 0.6*uy, Y: y - 0.35*uy - 0.6*ux}, pen.Pt{X: x + 0.35*ux - 0.6*uy, Y: y + 0.35*uy + 0.6*ux}, thin)
+	}
+}
+
+// drawStubs carries the lines on to the bodies of the symbols.
+func (d *sheetDrawing) drawStubs() {
+	d.stubOf = make([]map[int]bool, len(d.parts))
+	for _, sb := range d.stubs() {
+		if d.stubOf[sb.part] == nil {
+			d.stubOf[sb.part] = map[int]bool{}
+		}
+		d.stubOf[sb.part][sb.prim] = true
+		n := d.now[sb.net]
+		w := d.widthOf(n.into[sb.end])
+		if sb.pilot {
+			w = lineThin
+		}
+		d.p.Polyline(penPts(sb.pts), false, color.NRGBA{}, dashed(w, d.tintOf(n), sb.style))
+	}
+}
+
+// crossing leaves a gap in the line that passes below.
+func (d *sheetDrawing) crossing(c drawing.Crossing) {
+	over, under := d.stretchAt(c.Over, c.At, true), d.stretchAt(c.Under, c.At, false)
+	if over == nil || under == nil {
+		return
+	}
+	along := drawing.Pt{Y: 1}
+	if over.pilot && !under.pilot { // a dashed line passes below
+		over, under, along = under, over, drawing.Pt{X: 1}
+	}
+	if !d.nets[over.net].kind.Fluid() {
+		return
+	}
+	top := d.stroke(over)
+	top.Dash = nil
+	half := d.stroke(under).W/2 + 0.5
+	a := pen.Pt{X: c.At.X - along.X*half, Y: c.At.Y - along.Y*half}
+	b := pen.Pt{X: c.At.X + along.X*half, Y: c.At.Y + along.Y*half}
+	pen.Line(d.p, a, b, pen.Stroke{W: top.W + 0.9, C: d.pal.Card})
+	pen.Line(d.p, a, b, top)
+}
+
+// stretchAt finds the stretch of a net that passes a point upright or level.
+func (s *Sheet) stretchAt(net int, at drawing.Pt, upright bool) *stretch {
+	for i := range s.stretches {
+		st := &s.stretches[i]
+		if st.net != net {
+			continue
+		}
+		for k := 1; k < len(st.pts); k++ {
+			a, b := st.pts[k-1], st.pts[k]
+			if (a.X == b.X) == upright && contains(grown(union(drawing.Box{Min: a, Max: a}, drawing.Box{Min: b, Max: b}), 1e-6), at) {
+				return st
+			}
+		}
+	}
+	return nil
+}
+
+// dots marks where lines of a net meet, no narrower than the lines.
+func (d *sheetDrawing) dots(i int) {
+	if !d.nets[i].kind.Fluid() {
+		return
+	}
+	for _, at := range d.nets[i].route.Dots {
+		w := 0.0
+		for k := range d.stretches {
+			st := &d.stretches[k]
+			if st.net == i && (st.pts[0] == at || st.pts[len(st.pts)-1] == at) {
+				w = math.Max(w, d.stroke(st).W)
+			}
+		}
+		d.p.Circle(penPt(at), math.Max(0.42, w/2+0.12), d.tintOf(d.now[i]), pen.Stroke{})
+	}
+}
+
+// chevron draws a mark of direction: cut out of a wide line, on a thin one laid over it.
+func (d *sheetDrawing) chevron(c chevron, tint color.NRGBA) {
+	half, stroke := 0.62, pen.Stroke{W: 0.26, C: tint}
+	if c.width >= 0.55 {
+		half, stroke = c.width/2+0.08, pen.Stroke{W: 0.26, C: d.pal.Card}
+	}
+	back := math.Min(0.62, half)
+	foot := drawing.Pt{X: c.tip.X - c.dir.X*back, Y: c.tip.Y - c.dir.Y*back}
+	side := drawing.Pt{X: -c.dir.Y * half, Y: c.dir.X * half}
+	d.p.Polyline([]pen.Pt{{X: foot.X + side.X, Y: foot.Y + side.Y}, penPt(c.tip), {X: foot.X - side.X, Y: foot.Y - side.Y}}, false, color.NRGBA{}, stroke)
+}

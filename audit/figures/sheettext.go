@@ -1,0 +1,242 @@
+package figures
+
+import (
+	"image/color"
+
+	"barlitre/audit/pen"
+	"barlitre/circuit"
+	"barlitre/circuit/drawing"
+	"barlitre/machines/units"
+)
+
+// word is a run of text in a row of a label.
+type word struct {
+	text string
+	size float64
+	c    color.NRGBA
+	bold bool
+	mark circuit.Level // of a finding instead of text
+}
+
+func (w word) width() float64 {
+	if w.mark != "" {
+		return markRoom - 0.5
+	}
+	return pen.TextWidth(w.text, w.size, w.bold)
+}
+
+// labelTexts writes the labels of blocks and lines.
+func (d *sheetDrawing) labelTexts() {
+	for i := range d.labels {
+		l := &d.labels[i]
+		rows := make([][]word, 0, len(l.rows))
+		used := false
+		for _, r := range l.rows {
+			ws := d.words(l, r)
+			rows = append(rows, ws)
+			used = used || len(ws) > 0
+		}
+		if !used {
+			continue
+		}
+		if l.halo {
+			d.halo(l, rows)
+		}
+		y := l.box.Min.Y
+		if l.part < 0 && len(rows) == 2 && (len(rows[0]) == 0 || len(rows[1]) == 0) { // half full: in the middle
+			y += noteSize * rowHeight / 2
+			if len(rows[0]) == 0 {
+				rows = rows[1:]
+			}
+		}
+		for k, ws := range rows {
+			size := l.rows[k].size()
+			d.writeRow(l, ws, y+size*pen.Ascent)
+			y += size * rowHeight
+		}
+	}
+}
+
+// words is what stands in a row of a label now.
+func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
+	if l.part < 0 {
+		return d.lineWords(&d.stretches[l.stretch], r)
+	}
+	p := &d.parts[l.part]
+	note := func(s string) []word {
+		if s == "" {
+			return nil
+		}
+		return []word{{text: s, size: noteSize, c: d.pal.Secondary}}
+	}
+	switch r {
+	case rowTag, rowTagHeat:
+		out := []word{{text: p.id, size: tagSize, c: d.pal.Ink, bold: true}}
+		if level := d.opt.Findings[p.id]; level != "" {
+			out = append(out, word{mark: level, size: tagSize})
+		}
+		if r == rowTagHeat {
+			out = append(out, d.heatWords(p)...)
+		}
+		return out
+	case rowHeat:
+		return d.heatWords(p)
+	case rowLive:
+		if d.st == nil {
+			return nil
+		}
+		return note(p.live(d.st, d.opt.System))
+	}
+	if p.block.Kind == "valve" && d.st != nil {
+		if text := p.live(d.st, d.opt.System); text != "" {
+			return note(text)
+		}
+	}
+	return note(p.value(d.opt.System))
+}
+
+// heatWords is the heat of a block, if it counts among the others.
+func (d *sheetDrawing) heatWords(p *part) []word {
+	h := d.st.Heat(p.id)
+	if p.copied || ratio(h, d.most) < heatShown {
+		return nil
+	}
+	return []word{{text: heatText(h, d.st.Energy, d.opt.System), size: noteSize, c: d.pal.heatText(), bold: true}}
+}
+
+// heatText writes a power or an energy.
+func heatText(h float64, energy bool, sys units.System) string {
+	dim := units.Power
+	if energy {
+		dim = units.Energy
+	}
+	return units.Format(h, units.Preferred(dim, sys), 2+boolInt(h >= 1e4))
+}
+
+func boolInt(b bool) int {
+	if b {
+		return 1
+	}
+	return 0
+}
+
+// lineWords is what a label of a line says: nothing of what is not worth showing.
+func (d *sheetDrawing) lineWords(st *stretch, r row) []word {
+	if d.st == nil {
+		return nil
+	}
+	n := d.now[st.net]
+	pressure, flow := "", ""
+	if r != rowFlow && ratio(n.pressure, d.scales.Pressure) >= pressureShown {
+		pressure = units.Format(n.pressure, units.Preferred(units.Pressure, d.opt.System), 3)
+	}
+	if q := st.along(n); r != rowPressure && d.flowing(q) {
+		if q < 0 {
+			q = -q
+		}
+		flow = units.Format(q, units.Preferred(units.Flow, d.opt.System), 3)
+	}
+	text := pressure + flow
+	if pressure != "" && flow != "" {
+		text = pressure + " · " + flow
+	}
+	if text == "" {
+		return nil
+	}
+	return []word{{text: text, size: noteSize, c: d.pal.Ink}}
+}
+
+// wordGap lies between the words of a row [M].
+const wordGap = 0.7
+
+// rowWidth is the width of words with the gaps between them.
+func rowWidth(ws []word) float64 {
+	w := 0.0
+	for i, v := range ws {
+		if i > 0 {
+			w += wordGap
+		}
+		w += v.width()
+	}
+	return w
+}
+
+// writeRow writes words with their baseline at y. What is wider than the room kept for
+// it is made smaller.
+func (d *sheetDrawing) writeRow(l *sheetLabel, ws []word, y float64) {
+	room := l.box.Max.X - l.box.Min.X
+	k := 1.0
+	if w := rowWidth(ws); w > room {
+		k = room / w
+	}
+	x := l.box.Min.X
+	switch w := k * rowWidth(ws); l.align {
+	case pen.Right:
+		x = l.box.Max.X - w
+	case pen.Center:
+		x = (l.box.Min.X + l.box.Max.X - w) / 2
+	}
+	for _, w := range ws {
+		if w.mark != "" {
+			d.mark(w.mark, x+0.9*k, y-w.size*capHalf, 0.85*k)
+		} else {
+			d.p.Text(pen.Pt{X: x, Y: y}, w.text, w.size*k, w.c, pen.Left, w.bold)
+		}
+		x += k * (w.width() + wordGap)
+	}
+}
+
+// halo covers the lines behind a label with the ground.
+func (d *sheetDrawing) halo(l *sheetLabel, rows [][]word) {
+	w := 0.0
+	for _, ws := range rows {
+		w = max(w, rowWidth(ws))
+	}
+	b := l.box
+	w = min(w, b.Max.X-b.Min.X)
+	x := b.Min.X
+	switch l.align {
+	case pen.Right:
+		x = b.Max.X - w
+	case pen.Center:
+		x = (b.Min.X + b.Max.X - w) / 2
+	}
+	pen.RoundRect(d.p, x-0.3, b.Min.Y, w+0.6, b.Max.Y-b.Min.Y, 0.6, faded(d.pal.Card, 225), pen.Stroke{})
+}
+
+// mark draws the sign of a finding: a disc that stops, a triangle that warns or cautions,
+// a ring that notes.
+func (d *sheetDrawing) mark(level circuit.Level, x, y, r float64) {
+	bar := func(c color.NRGBA) {
+		pen.Line(d.p, pen.Pt{X: x, Y: y - 0.5*r}, pen.Pt{X: x, Y: y + 0.12*r}, pen.Stroke{W: 0.3 * r, C: c})
+		d.p.Circle(pen.Pt{X: x, Y: y + 0.48*r}, 0.17*r, c, pen.Stroke{})
+	}
+	switch level {
+	case circuit.Stops:
+		d.p.Circle(pen.Pt{X: x, Y: y}, r, d.pal.Danger, pen.Stroke{})
+		bar(d.pal.Card)
+	case circuit.Warns, circuit.Caution:
+		c := d.pal.Heat
+		if level == circuit.Caution {
+			c = d.pal.Danger
+		}
+		d.p.Polyline([]pen.Pt{{X: x, Y: y - r}, {X: x + r, Y: y + 0.8*r}, {X: x - r, Y: y + 0.8*r}}, true, c, pen.Stroke{})
+		bar(d.pal.On(c))
+	default:
+		d.p.Circle(pen.Pt{X: x, Y: y}, 0.8*r, color.NRGBA{}, pen.Stroke{W: 0.22, C: d.pal.Secondary})
+		d.p.Circle(pen.Pt{X: x, Y: y}, 0.2*r, d.pal.Secondary, pen.Stroke{})
+	}
+}
+
+// boxOf is used by tests and by callers that centre on a block: the body of a block in
+// the sheet's own coordinates [M].
+func (s *Sheet) boxOf(block string) (drawing.Box, bool) {
+	for i := range s.parts {
+		if p := &s.parts[i]; p.id == block && !p.copied {
+			b := p.body
+			o := s.box.Min
+			return drawing.Box{Min: drawing.Pt{X: b.Min.X - o.X, Y: b.Min.Y - o.Y}, Max: drawing.Pt{X: b.Max.X - o.X, Y: b.Max.Y - o.Y}}, true
+		}
+	}
+	return drawing.Box{}, false
+}

@@ -1,0 +1,148 @@
+package figures
+
+import (
+	"strings"
+
+	"barlitre/circuit"
+	"barlitre/circuit/drawing"
+	"barlitre/machines/units"
+)
+
+// telling names the parameters that tell most of a kind of block, the first that a
+// block has being shown; several in one entry are shown together, put into words by
+// the pattern, "%" standing for a value.
+var telling = map[string][]struct {
+	pattern string
+	keys    []string
+}{
+	"pressure_source": {{"%", []string{"pressure"}}},
+	"electric_motor":  {{"%", []string{"rated_power"}}},
+	"converter":       {{"%", []string{"rated_power"}}},
+	"pump":            {{"% · %", []string{"displacement", "set_pressure"}}, {"%", []string{"displacement"}}},
+	"charge_pump":     {{"% · %", []string{"displacement", "charge"}}},
+	"motor":           {{"%", []string{"displacement"}}},
+	"cylinder":        {{"%/% × %", []string{"bore", "rod", "stroke"}}, {"%/%", []string{"bore", "rod"}}},
+	"valve":           {{"%", []string{"nominal_flow"}}},
+	"relief":          {{"%", []string{"set"}}, {"%", []string{"crack"}}},
+	"check":           {{"%", []string{"opens"}}},
+	"pilot_check":     {{"1 : %", []string{"pilot_ratio"}}},
+	"counterbalance":  {{"%", []string{"setting"}}},
+	"compensator":     {{"%", []string{"drop"}}},
+	"orifice":         {{"ø %", []string{"diameter"}}, {"%", []string{"nominal_flow"}}},
+	"line":            {{"% × %", []string{"diameter", "length"}}},
+	"filter":          {{"%", []string{"nominal_flow"}}},
+}
+
+// value is the setting or size that tells most of a block, "" if it has none.
+func (p *part) value(sys units.System) string {
+	if p.kind == nil {
+		return p.block.Kind
+	}
+	for _, t := range telling[p.block.Kind] {
+		var parts []circuit.Value
+		var dims []units.Dim
+		for _, key := range t.keys {
+			if v, _, ok := p.kind.Value(p.block, key); ok && finite(v.SI) {
+				parts, dims = append(parts, v), append(dims, p.kind.Param(key).Dim)
+			}
+		}
+		if len(parts) == len(t.keys) {
+			return joinValues(t.pattern, parts, dims, sys)
+		}
+	}
+	return ""
+}
+
+// joinValues fills a pattern. Of values in one unit side by side only the last
+// carries it.
+func joinValues(pattern string, values []circuit.Value, dims []units.Dim, sys units.System) string {
+	out := pattern
+	for i, v := range values {
+		u := shownUnit(v, dims[i], sys)
+		text := units.Format(v.SI, u, 3)
+		if i+1 < len(values) && shownUnit(values[i+1], dims[i+1], sys) == u {
+			text = units.Number(u.FromSI(v.SI), 3)
+		}
+		out = strings.Replace(out, "%", text, 1)
+	}
+	return out
+}
+
+// shownUnit is the unit a value was given in if that belongs to the reader's system,
+// else the one that system prefers.
+func shownUnit(v circuit.Value, d units.Dim, sys units.System) units.Unit {
+	if v.Unit.Factor != 0 && (v.Unit.System == sys || sys == units.Metric && v.Unit.System == units.SI) {
+		return v.Unit
+	}
+	return units.Preferred(d, sys)
+}
+
+// moves tells whether the block has an axis of the duty on it.
+func (p *part) moves() bool {
+	return (p.block.Kind == "cylinder" || p.block.Kind == "motor") && p.block.Word("axis") != ""
+}
+
+// varies tells whether a pump or electric motor is set by a control, so that its
+// setting or speed is worth showing.
+func (p *part) varies() bool {
+	control := p.block.Word("control")
+	switch p.block.Kind {
+	case "pump", "motor":
+		return p.block.Word("follows") != "" || control != "" && control != "fixed"
+	case "electric_motor":
+		return p.block.Word("follows") != "" || control == "commanded"
+	}
+	return false
+}
+
+// live is what a block does at the instant shown, "" for a block that only stands
+// there. With a nil state it is a text as wide as any.
+func (p *part) live(st *SheetState, sys units.System) string {
+	show := func(signal string, d units.Dim, typical float64) (string, bool) {
+		v, ok := st.Signal(p.id + "." + signal)
+		if st == nil {
+			v, ok = typical, true
+		}
+		u := units.Preferred(d, sys)
+		if d == units.Ratio {
+			u = units.Percent
+		}
+		return units.Format(v, u, 3), ok
+	}
+	switch {
+	case p.block.Kind == "valve":
+		text, ok := show("u", units.Ratio, -0.888)
+		return given("open "+strings.TrimPrefix(text, "−"), ok)
+	case p.block.Kind == "cylinder":
+		v, ok := show("v", units.Velocity, -0.888)
+		f, ok2 := show("F", units.Force, -888e3)
+		return given(v+" · "+f, ok && ok2)
+	case p.moves():
+		w, ok := show("w", units.AngularSpeed, -1888*units.RPM)
+		f, ok2 := show("load", units.Torque, -8888)
+		return given(w+" · "+f, ok && ok2)
+	case p.block.Kind == "electric_motor" && p.varies():
+		w, ok := show("w", units.AngularSpeed, -1888*units.RPM)
+		return given(w, ok)
+	case p.varies():
+		e, ok := show("e", units.Ratio, -0.888)
+		return given("setting "+e, ok)
+	}
+	return ""
+}
+
+func given(text string, ok bool) string {
+	if !ok {
+		return ""
+	}
+	return text
+}
+
+// rodReach is the room that the rod of a cylinder and the arrow of its motion need.
+func (p *part) rodReach() (drawing.Box, bool) {
+	if p.base.Name != "cylinder" {
+		return drawing.Box{}, false
+	}
+	s := drawing.Symbol{Prims: []drawing.Prim{{Kind: drawing.Line, Pts: []drawing.Pt{{X: 6.5, Y: -2.2}, {X: 17.2, Y: 1}}}}}
+	return s.Placed(p.at, p.block.Turn, p.block.Mirror).Box(), true
+}

@@ -1,0 +1,62 @@
+package figures
+
+import (
+	"context"
+	"fmt"
+	"image"
+	"image/png"
+	"os"
+	"testing"
+
+	"barlitre/audit"
+	"barlitre/audit/pen"
+)
+
+func TestZLook(t *testing.T) {
+	dir := os.Getenv("LOOK")
+	if dir == "" {
+		t.Skip()
+	}
+	for _, name := range []string{"baling-press", "quayside-winch"} {
+		f, fs := audit.Read("../../samples/" + name + ".yaml")
+		if f == nil {
+			t.Fatal(fs)
+		}
+		sol, err := audit.Solve(context.Background(), f, audit.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		sc := ScalesOf(sol.Circuits[0].Duties[0], sol.Circuits[1].Duties[0])
+		times := map[string][]float64{"baling-press": {5, 17, 22.5, 28.5}, "quayside-winch": {6, 18, 28, 50}}[name]
+		for ci, c := range sol.Circuits {
+			s := NewSheet(c.Circuit)
+			for _, pal := range []struct {
+				n string
+				p Palette
+			}{{"light", Light}, {"dark", Dark}} {
+				for k, tm := range append([]float64{-1, -2}, times...) {
+					if pal.n == "dark" && k != 3 && k != 1 {
+						continue
+					}
+					var st *SheetState
+					if tm == -2 {
+						st = OverCycle(c.Duties[0], times[0])
+					} else if tm >= 0 {
+						st = StateAt(c.Duties[0], tm)
+					}
+					w, h := s.Size()
+					sx := 12.0
+					img := image.NewRGBA(image.Rect(0, 0, int(w*sx), int((h+LegendHeight)*sx)))
+					r := pen.NewRaster(img)
+					r.Clear(pal.p.Card)
+					opt := SheetOptions{Palette: pal.p, Scales: sc, Legend: true}
+					s.Draw(r, 0, 0, sx, st, opt)
+					out, _ := os.Create(fmt.Sprintf("%s/%s-%d-%s-%d.png", dir, name, ci, pal.n, k))
+					png.Encode(out, img)
+					out.Close()
+				}
+			}
+			fmt.Println(s.Size())
+		}
+	}
+}
