@@ -11,6 +11,7 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/machines/units"
 )
 
 // place is a value that an edit sets, in one circuit or elsewhere.
@@ -31,9 +32,11 @@ type place struct {
 //	As found/pump_at_rest, note, role, retrofit_cost.low, .likely, .high
 //	oil.temperature, air.temperature, energy.price, site.name ...
 //
+// A value that leaves its own low and high takes them along.
+//
 // quantity is written as in a file: "160 bar", "tandem", "yes". A key that is not
 // in the file yet is added. On an error (an unknown target, a unit that does not
-// fit, a value outside its own low and high) nothing is changed. After it,
+// fit) nothing is changed. After it,
 // pointers taken from the File before are of the old model.
 func (f *File) Set(target, quantity string) error {
 	quantity = strings.TrimSpace(quantity)
@@ -61,8 +64,60 @@ func (f *File) Set(target, quantity string) error {
 			return fmt.Errorf("%s: %w", p.label, err)
 		}
 		splices = append(splices, sp)
+		band, err := f.moveBand(src, p, quantity)
+		if err != nil {
+			return fmt.Errorf("%s: %w", p.label, err)
+		}
+		splices = append(splices, band...)
 	}
 	return f.change(target, splices, func(g *File) bool { return g.holds(target, quantity) })
+}
+
+// moveBand takes low and high along when a value leaves them: they said how sure
+// the old value was, and keep that share of the new one. What is wrong with a
+// value is said when the edited text is read.
+func (f *File) moveBand(src *source, p place, quantity string) ([]splice, error) {
+	n := child(p.mapping, p.key)
+	if p.kind == nil || p.attribute != "" || n == nil || n.Kind != yaml.MappingNode || p.kind.Param(p.key) == nil {
+		return nil, nil
+	}
+	dim := p.kind.Param(p.key).Dim
+	read := func(key string, u units.Unit) (float64, units.Unit, bool) {
+		v := child(n, key)
+		if v == nil {
+			return 0, u, false
+		}
+		if x, err := strconv.ParseFloat(v.Value, 64); err == nil && key != "value" {
+			return u.ToSI(x), u, true
+		}
+		si, u, err := units.Parse(v.Value, dim)
+		return si, u, err == nil
+	}
+	old, was, ok := read("value", units.Unit{})
+	si, unit, err := units.Parse(quantity, dim)
+	if !ok || err != nil || old <= 0 || si <= 0 {
+		return nil, nil
+	}
+	var out []splice
+	outside := false
+	for i, key := range []string{"low", "high"} {
+		end, _, ok := read(key, was)
+		if !ok {
+			continue
+		}
+		outside = outside || (i == 0 && si < end) || (i == 1 && si > end)
+		// Four digits are as sure as such an end is.
+		x, _ := strconv.ParseFloat(strconv.FormatFloat(unit.FromSI(end*si/old), 'g', 4, 64), 64)
+		sp, err := src.putBeside(p.mapping, p.key, key, encode(units.FileText(unit.ToSI(x), unit), false))
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, sp)
+	}
+	if !outside {
+		return nil, nil
+	}
+	return out, nil
 }
 
 // holds reports whether every place of a target has the value.

@@ -2,6 +2,7 @@ package audit
 
 import (
 	"bytes"
+	"math"
 	"os"
 	"strings"
 	"testing"
@@ -166,7 +167,6 @@ func TestSetRefuses(t *testing.T) {
 		{"V1.centre.origin", "measured", `"origin" is not known of centre`},
 		{"V1.nominal_drop.low", "4 bar", "set its value first"},
 		{"RV1.crack.origin", "guess", "known here: measured, name plate, data sheet, assumed"},
-		{"As found/RV1.override", "30 bar per 100 L/min", "must lie between its low and high"},
 		{"As found/RV1.override.low", "11", "must lie between its low and high"},
 		{"T1.turn", "4", "whole number from 0 to 3"},
 		{"energy.price", "0.2 USD/kWh", "the audit in EUR"},
@@ -267,5 +267,20 @@ func TestSetMendsAndReplaceUndoes(t *testing.T) {
 	}
 	if found := f.Replace([]byte("a: [")); len(found) == 0 || !bytes.Equal(f.Bytes(), before) {
 		t.Error("a text that is no audit file took the place of one")
+	}
+}
+
+// A value that leaves its own low and high takes them along, in the same proportion.
+func TestSetTakesTheBandAlong(t *testing.T) {
+	f := readTest(t, "full.yaml")
+	v := f.Circuit("As found").Block("RV1").Values["override"]
+	if err := f.Set("As found/RV1.override", "40 bar per 100 L/min"); err != nil {
+		t.Fatal(err)
+	}
+	w := f.Circuit("As found").Block("RV1").Values["override"]
+	for _, x := range [][2]float64{{w.Low / w.SI, v.Low / v.SI}, {w.High / w.SI, v.High / v.SI}} {
+		if math.Abs(x[0]-x[1]) > 1e-3 {
+			t.Errorf("the band is %g of the value, was %g", x[0], x[1])
+		}
 	}
 }

@@ -19,7 +19,7 @@ func setName(f *audit.File, target string) string {
 	words := strings.Split(rest, ".")
 	of := ""
 	if where != "" {
-		of = " in " + where
+		of = " (" + where + ")"
 	}
 	kind := kindOf(f, where, words[0])
 	if kind == nil || len(words) < 2 {

@@ -29,15 +29,13 @@ func (d *Document) Recoverable() []Recovery {
 	if d.opt.Config == "" {
 		return nil
 	}
-	entries, err := filepath.Glob(filepath.Join(d.recoveryFolder(), "*"+sessionExt))
-	if err != nil { // excluded but for a folder whose name is a pattern
-		return nil
-	}
+	entries, _ := os.ReadDir(d.recoveryFolder()) // not there before the first autosave
 	d.files.Lock()
 	defer d.files.Unlock()
 	var out []Recovery
-	for _, path := range entries {
-		if d.session != nil && d.session.list == path {
+	for _, e := range entries {
+		path := filepath.Join(d.recoveryFolder(), e.Name())
+		if filepath.Ext(path) != sessionExt || d.session != nil && d.session.list == path {
 			continue
 		}
 		s, err := openSession(path)

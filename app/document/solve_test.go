@@ -6,7 +6,9 @@ import (
 	"errors"
 	"fmt"
 	"math/rand"
+	"path/filepath"
 	"strings"
+	"sync"
 	"sync/atomic"
 	"testing"
 	"time"
@@ -57,11 +59,13 @@ func TestHammer(t *testing.T) {
 		} else if text, ok := texts[revision]; ok && string(s.File.Bytes()) != text {
 			t.Fatalf("the solution of revision %d is of another text", revision)
 		}
-		b.Findings()
-		if i%20 == 0 {
-			time.Sleep(time.Duration(r.Intn(400)) * time.Millisecond) // long enough to finish, at times
-		} else {
-			time.Sleep(time.Duration(r.Intn(10)) * time.Millisecond)
+		switch {
+		case i%25 == 0:
+			b.events.wait(t, Solved, b.Revision())
+		case i%5 == 0:
+			b.Findings()
+		default:
+			time.Sleep(time.Duration(r.Intn(50)) * time.Millisecond) // about as long as a solve
 		}
 	}
 	b.events.wait(t, Solved, b.Revision())
@@ -89,6 +93,87 @@ func TestHammer(t *testing.T) {
 		t.Error("the solution is not that of the text")
 	}
 	t.Logf("%d edits, %d solved", edits, solved)
+}
+
+// Edits, undo, saves and readers from several goroutines at once, on a solver that is
+// done sooner or later, or ends early when told to.
+func TestManyGoroutines(t *testing.T) {
+	solve := func(ctx context.Context, f *audit.File, _ audit.Options) (*audit.Solution, error) {
+		select {
+		case <-ctx.Done():
+			if rand.Intn(2) == 0 {
+				return nil, ctx.Err()
+			}
+		case <-time.After(time.Duration(rand.Intn(1000)) * time.Microsecond):
+		}
+		return &audit.Solution{File: f}, nil
+	}
+	b := newBench(t, solve, Options{AutosaveAfter: time.Millisecond})
+	path := filepath.Join(b.dir, "a.yaml")
+	check(t, b.SaveAs(path))
+	var all sync.WaitGroup
+	for n := range 4 {
+		all.Add(1)
+		go func() {
+			defer all.Done()
+			r := rand.New(rand.NewSource(int64(n)))
+			for i := range 150 {
+				if err := manyThings(b.Document, r, n*1000+i); err != nil {
+					t.Error(err)
+				}
+			}
+		}()
+	}
+	all.Wait()
+	b.Resolve()
+	for b.solvingNow() {
+		time.Sleep(time.Millisecond)
+	}
+	if s, _ := b.Solution(); !b.Current() || s.File != b.File() {
+		t.Error("the solution is not that of the present file")
+	}
+	last := 0
+	for _, e := range b.events.all() {
+		if e.Kind == Solved {
+			if e.Revision < last {
+				t.Errorf("revision %d solved after %d", e.Revision, last)
+			}
+			last = e.Revision
+		}
+	}
+	check(t, b.Save())
+	for ok := true; ok; {
+		_, ok = b.Undo()
+	}
+	if string(b.File().Bytes()) != emptyText || readFile(t, path) == "" {
+		t.Errorf("undone to\n%s", b.File().Bytes())
+	}
+}
+
+func manyThings(d *Document, r *rand.Rand, n int) error {
+	switch r.Intn(9) {
+	case 0:
+		d.Undo()
+	case 1:
+		d.Redo()
+	case 2:
+		return d.Save()
+	case 3:
+		d.CancelSolve()
+	case 4:
+		d.Findings()
+		if s, revision := d.Solution(); s != nil && revision > d.Revision() {
+			return fmt.Errorf("solution of revision %d before the revision", revision)
+		}
+	case 5:
+		d.Recoverable()
+		d.Title()
+	case 6:
+		return d.Step("site.name", fmt.Sprint("step ", n))
+	default:
+		return d.Set("site.name", fmt.Sprint("set ", n))
+	}
+	return nil
 }
 
 // gate is a solver that waits to be let through and does as it is told.
@@ -123,24 +208,21 @@ func TestEditEndsSolve(t *testing.T) {
 	b.openPress(t)
 	<-g.begun
 	for i := range 5 {
-		check(t, b.Set("RV1.set", fmt.Sprintf("%d bar", 231+i%4)))
+		check(t, b.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i%4)))
 		if running, _, _ := b.Solving(); !running {
 			t.Error("not solving after an edit")
 		}
 	}
 	revision := b.Revision()
-	b.events.wait(t, Edited, revision)
-	for deadline := time.After(10 * time.Second); ; { // the one before is ended, the latest is begun
+	for done := false; !done; { // those before were ended; only the latest is waiting to be let through
 		select {
 		case <-g.begun:
-			continue
 		case g.let <- nil:
-		case <-deadline:
-			t.Fatal("no solve to let through")
+			done = true
 		}
-		if b.events.wait(t, Solved, 1); true {
-			break
-		}
+	}
+	if e := b.events.wait(t, Solved, 1); e.Revision != revision {
+		t.Errorf("solved revision %d, want %d", e.Revision, revision)
 	}
 	if _, got := b.Solution(); got != revision || !b.Current() {
 		t.Errorf("solution of %d, want %d", got, revision)
@@ -205,7 +287,7 @@ func TestSolverFails(t *testing.T) {
 		if fault != nil && (!strings.Contains(fault.Error(), "index out of range") || !strings.Contains(fault.Stack, "solve_test.go")) {
 			t.Errorf("%v\n%s", fault, fault.Stack)
 		}
-		check(t, b.Set("RV1.set", fmt.Sprintf("%d bar", 231+i)))
+		check(t, b.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i)))
 		if b.Failure() != nil {
 			t.Error("a failure outlives an edit")
 		}
@@ -240,7 +322,7 @@ func TestOpenDropsSolution(t *testing.T) {
 			t.Error("the dropped solution was told")
 		}
 	}
-	check(t, b.Set("RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.set", "231 bar"))
 	if s, _ := b.Solution(); s == nil || b.Current() {
 		t.Error("after an edit the last solution stays, out of date")
 	}
@@ -295,7 +377,7 @@ func TestNotifyMayCall(t *testing.T) {
 		d.Recent()
 		switch {
 		case e.Kind == Opened:
-			d.Set("RV1.set", "231 bar")
+			d.Set("As found/RV1.set", "231 bar")
 		case e.Kind == Autosaved:
 			d.Undo()
 			d.Resolve()
@@ -328,7 +410,7 @@ func BenchmarkEditToVerdict(b *testing.B) {
 	<-solved
 	b.ResetTimer()
 	for i := range b.N {
-		check(b, d.Set("RV1.set", fmt.Sprintf("%d bar", 231+i%2)))
+		check(b, d.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i%2)))
 		for <-solved != d.Revision() {
 		}
 	}
@@ -340,6 +422,6 @@ func BenchmarkSet(b *testing.B) {
 	defer d.Abandon()
 	check(b, d.OpenSample(press))
 	for i := range b.N {
-		check(b, d.Set("RV1.set", fmt.Sprintf("%d bar", 231+i%2)))
+		check(b, d.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i%2)))
 	}
 }

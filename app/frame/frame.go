@@ -51,6 +51,9 @@ type Frame struct {
 
 var _ station.Context = (*Frame)(nil)
 
+// post runs a function on the UI goroutine; tests keep a queue of their own.
+var post = fyne.Do
+
 // New makes the window around a document that it opens and closes itself. The
 // document tells it of changes through Notify, from any goroutine. stations are
 // the constructors of the stations in the order of the job.
@@ -58,7 +61,7 @@ func New(app fyne.App, opt document.Options, stations ...func(station.Context) s
 	f := &Frame{app: app, circuit: -1}
 	f.settings = readSettings(app.Preferences())
 	app.Settings().SetTheme(f.theme())
-	opt.Notify = func(e document.Event) { fyne.Do(func() { f.told(e) }) }
+	opt.Notify = func(e document.Event) { post(func() { f.told(e) }) }
 	f.doc = document.New(opt)
 	f.win = app.NewWindow("Barlitre")
 	f.win.SetPadded(false)

@@ -42,14 +42,14 @@ func rgb(v uint32) color.NRGBA {
 var Light = Palette{
 	Ground: rgb(0xF6F4EF), Card: rgb(0xFFFFFF), Edge: rgb(0xD9D5CB), Ink: rgb(0x20303A), Secondary: rgb(0x71808A),
 	Gain: rgb(0x0B7A75), Heat: rgb(0xD98200), Danger: rgb(0xC2412D), Bar: rgb(0x8A979F), Pale: rgb(0xCAD3D9),
-	low: rgb(0xB4C0CC), high: rgb(0x2B1F6B),
+	low: rgb(0xA3B1BD), high: rgb(0x2B1F6B),
 }
 
 // Dark has the same roles chosen again for contrast on a dark ground.
 var Dark = Palette{
 	Ground: rgb(0x141A1E), Card: rgb(0x1D252A), Edge: rgb(0x3A454C), Ink: rgb(0xE6EAEC), Secondary: rgb(0x9DABB3),
 	Gain: rgb(0x3FBFB4), Heat: rgb(0xF2A93B), Danger: rgb(0xF27A63), Bar: rgb(0x82929C), Pale: rgb(0x46555F),
-	low: rgb(0x4A5966), high: rgb(0xC9C0FF),
+	low: rgb(0x566774), high: rgb(0xDED8FF),
 }
 
 // Color returns the colour of a role; Ink for an unknown one.

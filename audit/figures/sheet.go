@@ -21,6 +21,7 @@ type Sheet struct {
 	stretches []stretch
 	crossings []drawing.Crossing
 	labels    []sheetLabel
+	seen      *seen       // nil before there are results
 	box       drawing.Box // of everything that may be drawn, without legend
 }
 

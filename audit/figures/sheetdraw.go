@@ -101,6 +101,9 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	if opt.Legend {
 		w, h := s.Size()
 		p.Push(sheetMargin, h, 1)
+		if st == nil {
+			d.scales = SheetScales{}
+		}
 		DrawLegend(p, w-2*sheetMargin, d.scales, st != nil && st.Energy, opt)
 		p.Pop()
 	}

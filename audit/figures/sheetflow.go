@@ -62,12 +62,12 @@ type chevron struct {
 // Spacing of chevrons along a straight piece [M].
 const (
 	chevronEvery = 11.0
-	chevronLeast = 2.6 // shorter pieces carry none
+	chevronLeast = 2.6 // shorter pieces carry none; 1.8 if a stretch has no longer one
 	chevronClear = 1.6 // from crossings
 )
 
 // chevrons returns the marks along a stretch with flow q along its points. The longest
-// piece always has one, other pieces if they are long enough.
+// piece has one if there is room, other pieces if they are long enough.
 func (s *Sheet) chevrons(st *stretch, q, width float64) []chevron {
 	var out []chevron
 	longest := 0.0
@@ -77,7 +77,7 @@ func (s *Sheet) chevrons(st *stretch, q, width float64) []chevron {
 	for i := 1; i < len(st.pts); i++ {
 		a, b := st.pts[i-1], st.pts[i]
 		length := distance(a, b)
-		if length < chevronLeast && length < longest {
+		if length < chevronLeast && (length < longest || length < 1.8) {
 			continue
 		}
 		if q < 0 {

@@ -15,7 +15,6 @@ const (
 	tagSize   = 2.1
 	noteSize  = 1.8
 	rowHeight = 1.2 // in sizes
-	markRoom  = 2.3 // width kept for the mark of a finding [M]
 	labelGap  = 0.7 // between a block and its label [M]
 )
 
@@ -58,9 +57,9 @@ func (r row) width(p *part) float64 {
 	heat := pen.TextWidth("88.8 kW", noteSize, true)
 	switch r {
 	case rowTag:
-		return pen.TextWidth(p.id, tagSize, true) + markRoom
+		return pen.TextWidth(p.id, tagSize, true)
 	case rowTagHeat:
-		return pen.TextWidth(p.id, tagSize, true) + markRoom + heat
+		return pen.TextWidth(p.id, tagSize, true) + wordGap + heat
 	case rowValue:
 		w := text(p.value)
 		if p.block.Kind == "valve" {
@@ -103,11 +102,13 @@ const (
 	costOnSymbol = 6.0  // each square module of a symbol under it
 	costRows     = 14.0 // each row left out
 	costFar      = 1.5  // each module away
+	costDoubt    = 2.0  // each module nearer to another block
 )
 
 // labeller keeps what is already taken.
 type labeller struct {
 	solid, lines []drawing.Box
+	bodies       []drawing.Box // by part
 	labels       []drawing.Box
 }
 
@@ -115,6 +116,7 @@ func (s *Sheet) placeLabels() {
 	k := &labeller{}
 	for i := range s.parts {
 		k.solid = append(k.solid, s.parts[i].solid...)
+		k.bodies = append(k.bodies, s.parts[i].body)
 	}
 	for _, st := range s.stretches {
 		for i := 1; i < len(st.pts); i++ {
@@ -135,7 +137,7 @@ func segmentBox(a, b drawing.Pt) drawing.Box {
 // weigh returns what lies under a box, in costs, up to limit; ok is false if a label does.
 func (k *labeller) weigh(b drawing.Box, limit float64) (cost float64, ok bool) {
 	for _, o := range k.labels {
-		if shared(b, o) > 0 {
+		if shared(grown(b, 0.4), o) > 0 {
 			return 0, false
 		}
 	}
@@ -186,7 +188,7 @@ func (k *labeller) take(sp labelSpot, part int) sheetLabel {
 }
 
 // forms are the ways to write a block's label, best first, with what they cost.
-func (p *part) forms() (forms [][]row, cost []float64) {
+func (p *part) forms(heat bool) (forms [][]row, cost []float64) {
 	add := func(c float64, rows ...row) { forms, cost = append(forms, rows), append(cost, c) }
 	var notes []row
 	if !p.copied && p.value(units.Metric) != "" {
@@ -195,7 +197,7 @@ func (p *part) forms() (forms [][]row, cost []float64) {
 	if p.moves() || p.varies() {
 		notes = append(notes, rowLive)
 	}
-	if !p.heats() {
+	if !heat {
 		add(0, append([]row{rowTag}, notes...)...)
 		if len(notes) > 0 {
 			add(costRows*float64(len(notes)), rowTag)
@@ -215,12 +217,15 @@ func (p *part) forms() (forms [][]row, cost []float64) {
 // blockLabel finds room for the label of a part; it always finds some.
 func (s *Sheet) blockLabel(i int, k *labeller) sheetLabel {
 	p := &s.parts[i]
-	forms, cost := p.forms()
+	forms, cost := p.forms(s.seen.hot(p))
 	for _, reach := range []float64{4, 12, 40, 400} {
 		var spots []labelSpot
 		for f, rows := range forms {
 			w, h := labelSize(p, rows)
 			spots = append(spots, p.spots(w, h, rows, cost[f], reach)...)
+		}
+		for n := range spots {
+			spots[n].cost += k.doubt(spots[n].box, i)
 		}
 		if sp, ok := k.best(spots); ok {
 			return k.take(sp, i)
@@ -229,6 +234,23 @@ func (s *Sheet) blockLabel(i int, k *labeller) sheetLabel {
 	// Not met: 400 modules away there is room for any label.
 	w, h := labelSize(p, []row{rowTag})
 	return k.take(labelSpot{box: boxAt(p.body.Max.X+labelGap, p.body.Min.Y, w, h), rows: []row{rowTag}, stretch: -1}, i)
+}
+
+// doubt is what speaks against a place where a label may be taken for that of another
+// block: one that is nearer than its own.
+func (k *labeller) doubt(b drawing.Box, part int) float64 {
+	own, cost := apart(b, k.bodies[part]), 0.0
+	for i, o := range k.bodies {
+		if gap := apart(b, o); i != part && gap < own+1 {
+			cost += costDoubt * math.Min(2, own+1-gap)
+		}
+	}
+	return cost
+}
+
+// apart is the distance between two boxes along the axes, 0 if they touch.
+func apart(a, b drawing.Box) float64 {
+	return math.Max(0, math.Max(a.Min.X-b.Max.X, b.Min.X-a.Max.X)) + math.Max(0, math.Max(a.Min.Y-b.Max.Y, b.Min.Y-a.Max.Y))
 }
 
 func boxAt(x, y, w, h float64) drawing.Box {

@@ -13,7 +13,7 @@ import (
 const LegendHeight = 6.0
 
 // legendGap lies between the entries of a legend [M].
-const legendGap = 4.0
+const legendGap = 3.0
 
 // DrawLegend draws, from the origin of p on and in modules, what tint, width and discs
 // mean, as far as it fits into width w: pressure, flow, heat, and the kinds of lines.
@@ -54,7 +54,7 @@ func (l *legendPen) text(s string, x, y float64, al pen.Align) {
 
 // pressure draws the tint from zero to the largest pressure.
 func (l *legendPen) pressure(most float64) {
-	const length, steps = 16.0, 48
+	const length, steps = 12.0, 48
 	text := units.Format(most, units.Preferred(units.Pressure, l.sys), 3)
 	w := 2 + length + 1 + pen.TextWidth(text, noteSize, false)
 	if !l.need(w) {

@@ -14,7 +14,7 @@ import (
 func (s *Sheet) lineLabels(k *labeller) {
 	of := make([][]int, len(s.nets))
 	for i, st := range s.stretches {
-		if s.nets[st.net].kind.Fluid() && !st.pilot {
+		if s.nets[st.net].kind.Fluid() && !st.pilot && s.seen.worth(i) {
 			of[st.net] = append(of[st.net], i)
 		}
 	}
@@ -33,7 +33,7 @@ func (s *Sheet) lineLabels(k *labeller) {
 	}
 	for _, n := range order {
 		for _, i := range of[n] {
-			if i == first[n] || s.stretches[i].length < 5 || first[n] < 0 || s.mirrored(i, first[n]) {
+			if i == first[n] || s.stretches[i].length < 5 || first[n] < 0 || s.mirrored(i, first[n]) || !s.seen.flows(i) {
 				continue
 			}
 			if l, ok := s.lineLabel([]int{i}, false, k); ok {

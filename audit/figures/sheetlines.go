@@ -141,7 +141,12 @@ func (d *sheetDrawing) drawStubs() {
 		if sb.pilot {
 			w = lineThin
 		}
-		d.p.Polyline(penPts(sb.pts), false, color.NRGBA{}, dashed(w, d.tintOf(n), sb.style))
+		pts := penPts(sb.pts)
+		if out := distance(sb.pts[0], sb.pts[1]); sb.style == drawing.Solid && out > 0 { // lap over the line, or a seam shows
+			pts[0].X -= 0.2 / out * (pts[1].X - pts[0].X)
+			pts[0].Y -= 0.2 / out * (pts[1].Y - pts[0].Y)
+		}
+		d.p.Polyline(pts, false, color.NRGBA{}, dashed(w, d.tintOf(n), sb.style))
 	}
 }
 
@@ -152,7 +157,7 @@ func (d *sheetDrawing) crossing(c drawing.Crossing) {
 		return
 	}
 	along := drawing.Pt{Y: 1}
-	if over.pilot && !under.pilot { // a dashed line passes below
+	if d.rank(under) > d.rank(over) { // the lesser line passes below
 		over, under, along = under, over, drawing.Pt{X: 1}
 	}
 	if !d.nets[over.net].kind.Fluid() {
@@ -161,10 +166,24 @@ func (d *sheetDrawing) crossing(c drawing.Crossing) {
 	top := d.stroke(over)
 	top.Dash = nil
 	half := d.stroke(under).W/2 + 0.5
-	a := pen.Pt{X: c.At.X - along.X*half, Y: c.At.Y - along.Y*half}
-	b := pen.Pt{X: c.At.X + along.X*half, Y: c.At.Y + along.Y*half}
-	pen.Line(d.p, a, b, pen.Stroke{W: top.W + 0.9, C: d.pal.Card})
-	pen.Line(d.p, a, b, top)
+	piece := func(half float64) []pen.Pt {
+		return []pen.Pt{{X: c.At.X - along.X*half, Y: c.At.Y - along.Y*half}, {X: c.At.X + along.X*half, Y: c.At.Y + along.Y*half}}
+	}
+	d.p.Polyline(piece(half), false, color.NRGBA{}, pen.Stroke{W: top.W + 0.9, C: d.pal.Card})
+	d.p.Polyline(piece(half+0.25), false, color.NRGBA{}, top) // laps over the line, or a seam shows
+}
+
+// rank orders lines that cross: wide before narrow, full before dashed, oil before
+// shafts.
+func (d *sheetDrawing) rank(st *stretch) float64 {
+	if !d.nets[st.net].kind.Fluid() {
+		return -1
+	}
+	r := d.stroke(st).W
+	if st.style == drawing.Solid {
+		r += lineThin
+	}
+	return r
 }
 
 // stretchAt finds the stretch of a net that passes a point upright or level.

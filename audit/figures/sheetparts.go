@@ -60,7 +60,7 @@ func unknownSymbol() drawing.Symbol {
 // isStub tells whether a piece of a symbol belongs to its connections rather than to
 // its body.
 func isStub(name string) bool {
-	return name == "ports" || name == "shaft" || name == "pilot" || strings.HasPrefix(name, "port:")
+	return name == "ports" || name == "shaft" || name == "pilot" || name == "turning" || strings.HasPrefix(name, "port:")
 }
 
 // stand puts the symbol at its place.
@@ -78,17 +78,23 @@ func (p *part) stand() {
 	if p.body.Min.X > p.body.Max.X {
 		p.body = p.symbol.Box()
 	}
-	p.centre = mid(p.body)
-	for _, q := range p.symbol.Prims {
-		if q.Kind == drawing.Circle && q.Part == "circle" { // a machine with its control beside it
-			p.centre = q.C
-		}
-	}
+	p.centre = p.heart()
 	p.reach = nil
 	if rod, ok := p.rodReach(); ok {
 		p.reach = append(p.reach, rod)
 		p.solid = append(p.solid, rod)
 	}
+}
+
+// heart is the middle of the part of a symbol that does the work, without what sets it.
+func (p *part) heart() drawing.Pt {
+	for _, q := range p.symbol.Prims {
+		switch q.Part {
+		case "circle", "square", "square:middle", "ball", "diamond":
+			return mid(primBox(q))
+		}
+	}
+	return mid(p.body)
 }
 
 func mid(b drawing.Box) drawing.Pt {

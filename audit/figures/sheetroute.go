@@ -281,7 +281,7 @@ func (s *Sheet) stubs() []stub {
 // stubFrom gives the points of a piece of a symbol from a port inwards, nil if the
 // piece does not begin there. A piece from port to port gives its first half.
 func stubFrom(q drawing.Prim, sym drawing.Symbol, port drawing.Port) []drawing.Pt {
-	if q.Kind != drawing.Line || !isStub(q.Part) || q.Part == "shaft" || len(q.Pts) < 2 {
+	if q.Kind != drawing.Line || !isStub(q.Part) || q.Part == "shaft" || q.Part == "turning" || len(q.Pts) < 2 {
 		return nil
 	}
 	pts := append([]drawing.Pt(nil), q.Pts...)

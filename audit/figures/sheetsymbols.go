@@ -27,7 +27,10 @@ func (d *sheetDrawing) symbols() {
 			}
 			d.prim(q)
 		}
-		d.motion(p, shift)
+		d.motion(p)
+		if level := d.opt.Findings[p.id]; level != "" && !p.copied {
+			d.mark(level, p.body.Min.X-0.1, p.body.Min.Y-0.1, 1)
+		}
 	}
 }
 
@@ -53,8 +56,7 @@ func (d *sheetDrawing) prim(q drawing.Prim) {
 		d.p.Arc(penPt(q.C), q.R, q.A0, q.A1, line)
 	case drawing.Text:
 		al := [...]pen.Align{drawing.Middle: pen.Center, drawing.Start: pen.Left, drawing.End: pen.Right}[q.Align]
-		em := q.H / (2 * capHalf)
-		d.p.Text(pen.Pt{X: q.C.X, Y: q.C.Y + q.H/2}, q.Text, em, d.pal.Ink, al, false)
+		d.p.Text(pen.Pt{X: q.C.X, Y: q.C.Y + capHalf*q.H}, q.Text, q.H, d.pal.Ink, al, false)
 	}
 }
 
@@ -121,7 +123,7 @@ func movedPrim(q drawing.Prim, by drawing.Pt) drawing.Prim {
 }
 
 // motion draws an arrow beside the rod of a cylinder that moves.
-func (d *sheetDrawing) motion(p *part, shift drawing.Pt) {
+func (d *sheetDrawing) motion(p *part) {
 	v, ok := d.st.Signal(p.id + ".v")
 	if p.base.Name != "cylinder" || !ok || v == 0 || !finite(v) {
 		return

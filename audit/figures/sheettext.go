@@ -5,7 +5,6 @@ import (
 
 	"barlitre/audit/pen"
 	"barlitre/circuit"
-	"barlitre/circuit/drawing"
 	"barlitre/machines/units"
 )
 
@@ -15,46 +14,46 @@ type word struct {
 	size float64
 	c    color.NRGBA
 	bold bool
-	mark circuit.Level // of a finding instead of text
 }
 
-func (w word) width() float64 {
-	if w.mark != "" {
-		return markRoom - 0.5
-	}
-	return pen.TextWidth(w.text, w.size, w.bold)
-}
+func (w word) width() float64 { return pen.TextWidth(w.text, w.size, w.bold) }
 
 // labelTexts writes the labels of blocks and lines.
 func (d *sheetDrawing) labelTexts() {
 	for i := range d.labels {
 		l := &d.labels[i]
-		rows := make([][]word, 0, len(l.rows))
-		used := false
+		var rows [][]word
+		unused := l.box.Max.Y - l.box.Min.Y
 		for _, r := range l.rows {
-			ws := d.words(l, r)
-			rows = append(rows, ws)
-			used = used || len(ws) > 0
+			if ws := d.words(l, r); len(ws) > 0 {
+				rows = append(rows, ws)
+				unused -= ws[0].size * rowHeight
+			}
 		}
-		if !used {
+		if len(rows) == 0 {
 			continue
 		}
+		y := l.box.Min.Y + d.rest(l)*unused
 		if l.halo {
 			d.halo(l, rows)
 		}
-		y := l.box.Min.Y
-		if l.part < 0 && len(rows) == 2 && (len(rows[0]) == 0 || len(rows[1]) == 0) { // half full: in the middle
-			y += noteSize * rowHeight / 2
-			if len(rows[0]) == 0 {
-				rows = rows[1:]
-			}
-		}
-		for k, ws := range rows {
-			size := l.rows[k].size()
-			d.writeRow(l, ws, y+size*pen.Ascent)
-			y += size * rowHeight
+		for _, ws := range rows {
+			d.writeRow(l, ws, y+ws[0].size*pen.Ascent)
+			y += ws[0].size * rowHeight
 		}
 	}
+}
+
+// rest is the share of the unused height of a label that lies above its text: all of it
+// for a label above its block, so that the text stays near.
+func (d *sheetDrawing) rest(l *sheetLabel) float64 {
+	switch {
+	case l.part < 0:
+		return 0.5
+	case l.box.Max.Y <= d.parts[l.part].body.Min.Y:
+		return 1
+	}
+	return 0
 }
 
 // words is what stands in a row of a label now.
@@ -72,9 +71,6 @@ func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
 	switch r {
 	case rowTag, rowTagHeat:
 		out := []word{{text: p.id, size: tagSize, c: d.pal.Ink, bold: true}}
-		if level := d.opt.Findings[p.id]; level != "" {
-			out = append(out, word{mark: level, size: tagSize})
-		}
 		if r == rowTagHeat {
 			out = append(out, d.heatWords(p)...)
 		}
@@ -177,11 +173,7 @@ func (d *sheetDrawing) writeRow(l *sheetLabel, ws []word, y float64) {
 		x = (l.box.Min.X + l.box.Max.X - w) / 2
 	}
 	for _, w := range ws {
-		if w.mark != "" {
-			d.mark(w.mark, x+0.9*k, y-w.size*capHalf, 0.85*k)
-		} else {
-			d.p.Text(pen.Pt{X: x, Y: y}, w.text, w.size*k, w.c, pen.Left, w.bold)
-		}
+		d.p.Text(pen.Pt{X: x, Y: y}, w.text, w.size*k, w.c, pen.Left, w.bold)
 		x += k * (w.width() + wordGap)
 	}
 }
@@ -226,17 +218,4 @@ func (d *sheetDrawing) mark(level circuit.Level, x, y, r float64) {
 		d.p.Circle(pen.Pt{X: x, Y: y}, 0.8*r, color.NRGBA{}, pen.Stroke{W: 0.22, C: d.pal.Secondary})
 		d.p.Circle(pen.Pt{X: x, Y: y}, 0.2*r, d.pal.Secondary, pen.Stroke{})
 	}
-}
-
-// boxOf is used by tests and by callers that centre on a block: the body of a block in
-// the sheet's own coordinates [M].
-func (s *Sheet) boxOf(block string) (drawing.Box, bool) {
-	for i := range s.parts {
-		if p := &s.parts[i]; p.id == block && !p.copied {
-			b := p.body
-			o := s.box.Min
-			return drawing.Box{Min: drawing.Pt{X: b.Min.X - o.X, Y: b.Min.Y - o.Y}, Max: drawing.Pt{X: b.Max.X - o.X, Y: b.Max.Y - o.Y}}, true
-		}
-	}
-	return drawing.Box{}, false
 }

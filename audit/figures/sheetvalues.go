@@ -1,6 +1,7 @@
 package figures
 
 import (
+	"math"
 	"strings"
 
 	"barlitre/circuit"
@@ -59,13 +60,30 @@ func joinValues(pattern string, values []circuit.Value, dims []units.Dim, sys un
 	out := pattern
 	for i, v := range values {
 		u := shownUnit(v, dims[i], sys)
-		text := units.Format(v.SI, u, 3)
-		if i+1 < len(values) && shownUnit(values[i+1], dims[i+1], sys) == u {
-			text = units.Number(u.FromSI(v.SI), 3)
+		text := settingText(u.FromSI(v.SI))
+		if i+1 == len(values) || shownUnit(values[i+1], dims[i+1], sys) != u {
+			text += unitText(u)
 		}
 		out = strings.Replace(out, "%", text, 1)
 	}
 	return out
+}
+
+// settingText is a number as it is set or printed on a plate: no zeros at its end.
+func settingText(x float64) string {
+	text := units.Number(x, 4)
+	if strings.Contains(text, ".") && !strings.Contains(text, "e") {
+		text = strings.TrimRight(strings.TrimRight(text, "0"), ".")
+	}
+	return text
+}
+
+// unitText is the label of a unit with the gap before it.
+func unitText(u units.Unit) string {
+	if u.Label() == "" {
+		return ""
+	}
+	return "\u202f" + u.Label()
 }
 
 // shownUnit is the unit a value was given in if that belongs to the reader's system,
@@ -103,11 +121,14 @@ func (p *part) live(st *SheetState, sys units.System) string {
 		if st == nil {
 			v, ok = typical, true
 		}
-		u := units.Preferred(d, sys)
+		u, digits := units.Preferred(d, sys), 3
 		if d == units.Ratio {
-			u = units.Percent
+			u, digits = units.Percent, 2
+			if math.Abs(v) >= 0.995 {
+				digits = 3
+			}
 		}
-		return units.Format(v, u, 3), ok
+		return units.Format(v, u, digits), ok
 	}
 	switch {
 	case p.block.Kind == "valve":

@@ -29,7 +29,7 @@ func TestZLook(t *testing.T) {
 		sc := ScalesOf(sol.Circuits[0].Duties[0], sol.Circuits[1].Duties[0])
 		times := map[string][]float64{"baling-press": {5, 17, 22.5, 28.5}, "quayside-winch": {6, 18, 28, 50}}[name]
 		for ci, c := range sol.Circuits {
-			s := NewSheet(c.Circuit)
+			s := NewSheet(c.Circuit).Labelled(c.Duties...)
 			for _, pal := range []struct {
 				n string
 				p Palette

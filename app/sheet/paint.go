@@ -1,0 +1,101 @@
+package sheet
+
+import (
+	"image"
+	"image/color"
+
+	"barlitre/app/widgets"
+	"barlitre/audit/figures"
+	"barlitre/audit/pen"
+)
+
+// localPen writes numbers with the user's decimal sign.
+type localPen struct {
+	pen.Pen
+	local func(string) string
+}
+
+func (l localPen) Text(p pen.Pt, s string, size float64, c color.NRGBA, al pen.Align, bold bool) {
+	l.Pen.Text(p, l.local(s), size, c, al, bold)
+}
+
+func (l localPen) TextWidth(s string, size float64, bold bool) float64 {
+	return l.Pen.TextWidth(l.local(s), size, bold)
+}
+
+// paint draws the sheet at the pixel size asked for. It runs on the UI goroutine.
+func (e *editor) paint(w, h int) image.Image {
+	if e.pen == nil || e.pen.Image().Rect.Dx() != w || e.pen.Image().Rect.Dy() != h {
+		e.pen = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
+	}
+	e.pen.Reset(e.pen.Image())
+	e.pen.Clear(e.s.ctx.Palette().Card)
+	size := e.Size()
+	if size.Width <= 0 || size.Height <= 0 {
+		return e.pen.Image()
+	}
+	e.pen.Push(0, 0, float64(w)/float64(size.Width))
+	e.draw(localPen{e.pen, e.s.ctx.Local})
+	e.pen.Pop()
+	return e.pen.Image()
+}
+
+// draw draws the sheet in units of the toolkit.
+func (e *editor) draw(p pen.Pen) {
+	w, h := e.room()
+	sh := e.sheet
+	if e.moved != nil {
+		sh = e.moved
+	}
+	if sh == nil {
+		e.drawEmpty(p, w, h)
+		return
+	}
+	ox, oy := sh.Origin()
+	p.ClipRect(0, 0, w, h)
+	sh.Draw(p, e.x+ox*e.zoom, e.y+oy*e.zoom, e.zoom, e.state, e.opt)
+	p.Unclip()
+	if e.state != nil && e.ownLegend() {
+		e.drawLegend(p, w, h)
+	}
+}
+
+// ownLegend tells whether the legend is drawn here: on the first sheet that is shown,
+// and on the second where it is at another zoom.
+func (e *editor) ownLegend() bool {
+	if e.index == 0 || e.s.wide || e.s.editors[0].state == nil {
+		return true
+	}
+	r := e.zoom / e.s.editors[0].zoom
+	return r < 0.98 || r > 1.02
+}
+
+// drawLegend draws the legend at a size that can be read. So that the samples are as
+// wide and large as on the sheet at its present zoom, they are asked for from scales
+// that are smaller by the square of the ratio: width and radius go with the root.
+func (e *editor) drawLegend(p pen.Pen, w, h float64) {
+	at := legendAt * float64(widgets.Scale())
+	k := at / e.zoom
+	sc := e.opt.Scales
+	sc.Flow, sc.Heat, sc.Energy = sc.Flow*k*k, sc.Heat*k*k, sc.Energy*k*k
+	p.ClipRect(0, h, w, e.legendHeight())
+	p.Push(12, h, at)
+	figures.DrawLegend(p, (w-24)/at, sc, e.state.Energy, e.opt)
+	p.Pop()
+	p.Unclip()
+}
+
+// drawEmpty says what belongs on the sheet and how to get it there.
+func (e *editor) drawEmpty(p pen.Pen, w, h float64) {
+	pal, k := e.s.ctx.Palette(), float64(widgets.Scale())
+	lines := []string{"A proposal stands here, beside the circuit as found.",
+		"File > Propose derives one from it; or add a circuit", "with role: proposal to the audit file."}
+	if e.index == 0 {
+		lines = []string{"No circuit in this audit yet.", "File > New begins with a kind of circuit;", "File > Open takes an audit file."}
+	}
+	y := h/2 - 20*k
+	for i, l := range lines {
+		p.Text(pen.Pt{X: w / 2, Y: y}, l, 12.5*k, map[bool]color.NRGBA{true: pal.Ink, false: pal.Secondary}[i == 0], pen.Center, false)
+		y += 19 * k
+	}
+}

@@ -1,0 +1,283 @@
+package sheet
+
+import (
+	"fyne.io/fyne/v2"
+
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/audit/figures"
+	"barlitre/circuit"
+)
+
+// Station is the page with the circuits.
+type Station struct {
+	ctx      station.Context
+	content  *fyne.Container
+	editors  [2]*editor
+	cards    [2]*card
+	bar      *bar
+	panel    *panel
+	findings *findings
+	edge     *widgets.Figure
+
+	proposal string // name of the chosen proposal, "" = the first
+	energy   bool   // discs show a cycle instead of an instant
+	wide     bool   // one sheet in full width
+	active   int    // the sheet worked on last
+	fold     fold
+	scales   figures.SheetScales
+}
+
+// New makes the station.
+func New(ctx station.Context) station.Station {
+	s := &Station{ctx: ctx}
+	s.build()
+	return s
+}
+
+// build makes all objects once.
+func (s *Station) build() {
+	for i := range s.editors {
+		s.editors[i] = newEditor(s, i)
+		s.cards[i] = newCard(s, i)
+	}
+	s.bar = newBar(s)
+	s.panel = newPanel(s)
+	s.findings = newFindings(s)
+	s.edge = newEdge(s)
+	s.content = s.layOut()
+}
+
+// Name is the word on the job rail.
+func (s *Station) Name() string { return "Circuit" }
+
+// Content is made once.
+func (s *Station) Content() fyne.CanvasObject { return s.content }
+
+// Help is the short help of the station.
+func (s *Station) Help() string { return helpText }
+
+// Changed brings in what changed.
+func (s *Station) Changed(w station.What) {
+	if w.Has(station.Model | station.Selection) {
+		s.bringCircuits(w.Has(station.Model))
+	}
+	if w.Has(station.Model | station.Solution | station.Settings | station.Selection) {
+		s.findings.reload()
+		s.scales = figures.ScalesOf(s.run(0), s.run(1))
+		s.bringOptions()
+	}
+	if w.Has(station.Model | station.Solution | station.Clock | station.Selection) {
+		s.bringState()
+	}
+	if w.Has(station.Settings) {
+		s.recolour()
+	}
+	s.panel.changed(w)
+	if w.Has(station.Selection) {
+		s.revealSelected()
+	}
+	s.bar.reload()
+	if w.Has(station.Model | station.Settings | station.Selection) {
+		s.edge.Refresh()
+		s.content.Refresh()
+	}
+	for _, e := range s.editors {
+		e.redraw()
+	}
+}
+
+// Mend reports a finding that keeps a circuit from being solved or is likely an
+// error, and a value that was refused and still stands in its field.
+func (s *Station) Mend() bool {
+	if len(s.panel.drafts) > 0 {
+		return true
+	}
+	for _, f := range s.ctx.Doc().Findings() {
+		if f.Circuit != "" && (f.Level == circuit.Stops || f.Level == circuit.Warns) {
+			return true
+		}
+	}
+	return false
+}
+
+// bringCircuits gives each sheet its circuit. A sheet is laid out anew only when the
+// file has changed.
+func (s *Station) bringCircuits(model bool) {
+	left, right := s.shown()
+	for i, c := range [2]int{left, right} {
+		e := s.editors[i]
+		var drawn *circuit.Circuit
+		if c >= 0 {
+			drawn = s.ctx.Doc().File().Circuits[c].Circuit
+		}
+		if model || e.circuit != c || e.drawn != drawn {
+			e.show(c, drawn)
+		}
+		s.cards[i].reload()
+	}
+	at, block := s.ctx.Selected()
+	for i, e := range s.editors {
+		if e.circuit >= 0 && e.circuit == at {
+			s.active = i
+			e.selectOnly(block)
+		} else {
+			e.selectOnly("")
+		}
+	}
+	if s.editors[s.active].circuit < 0 {
+		s.active = 0
+	}
+}
+
+// shown returns the circuits of the two sheets, −1 for none: the first as found,
+// and the chosen proposal. A selected circuit that neither shows becomes the second.
+func (s *Station) shown() (left, right int) {
+	file := s.ctx.Doc().File()
+	left, right = -1, -1
+	if file == nil || len(file.Circuits) == 0 {
+		return
+	}
+	left = 0
+	for i, c := range file.Circuits {
+		if c.Role == audit.AsFound {
+			left = i
+			break
+		}
+	}
+	if at, _ := s.ctx.Selected(); at >= 0 && at < len(file.Circuits) && at != left {
+		s.proposal = file.Circuits[at].Name
+	}
+	for i, c := range file.Circuits {
+		if i != left && (right < 0 || c.Name == s.proposal) {
+			right = i
+		}
+	}
+	return
+}
+
+// run is the solved duty at hand of the circuit on a sheet, nil when there is none.
+func (s *Station) run(i int) *audit.DutyRun {
+	return s.runOf(s.editors[i].name)
+}
+
+func (s *Station) runOf(name string) *audit.DutyRun {
+	c := s.solved(name)
+	if c == nil || s.ctx.Duty() < 0 || s.ctx.Duty() >= len(c.Duties) {
+		return nil
+	}
+	return c.Duties[s.ctx.Duty()]
+}
+
+// solved is the solution of a circuit by name, nil when there is none.
+func (s *Station) solved(name string) *audit.CircuitRun {
+	sol := s.ctx.Solution()
+	if sol == nil || name == "" {
+		return nil
+	}
+	for _, c := range sol.Circuits {
+		if c.Circuit.Name == name {
+			return c
+		}
+	}
+	return nil
+}
+
+// bringState gives both sheets the state at the clock.
+func (s *Station) bringState() {
+	for i, e := range s.editors {
+		if run := s.run(i); s.energy {
+			e.state = figures.OverCycle(run, s.ctx.Clock())
+		} else {
+			e.state = figures.StateAt(run, s.ctx.Clock())
+		}
+		e.hover.stale()
+	}
+}
+
+// bringOptions gives both sheets one set of scales, colours and units.
+func (s *Station) bringOptions() {
+	for _, e := range s.editors {
+		e.opt.Palette, e.opt.System, e.opt.Scales = s.ctx.Palette(), s.ctx.System(), s.scales
+		e.opt.Findings = s.findings.marks(e.name)
+		e.opt.Selected = e.selected
+	}
+}
+
+func (s *Station) recolour() {
+	for i := range s.editors {
+		s.editors[i].recolour()
+		s.cards[i].recolour()
+	}
+	s.panel.recolour()
+	s.bar.recolour()
+}
+
+// revealSelected makes sure the selected block can be seen.
+func (s *Station) revealSelected() {
+	if e := s.editors[s.active]; len(e.selected) > 0 {
+		e.reveal()
+	}
+	s.arrange()
+}
+
+// TypedKey takes keys that no widget has taken, such as from a window without a
+// focused widget.
+func (s *Station) TypedKey(k *fyne.KeyEvent) {
+	e := s.editors[s.active]
+	switch k.Name {
+	case fyne.KeyW:
+		s.setWide(!s.wide)
+	case fyne.KeyF:
+		s.fitAll()
+	default:
+		e.TypedKey(k)
+	}
+}
+
+// setWide shows one sheet in full width, or both.
+func (s *Station) setWide(on bool) {
+	s.wide = on
+	s.arrange()
+	s.bar.reload()
+	s.fitAll()
+}
+
+// setEnergy switches the discs between the instant and the cycle.
+func (s *Station) setEnergy(on bool) {
+	s.energy = on
+	s.bringState()
+	s.bar.reload()
+	for _, e := range s.editors {
+		e.redraw()
+	}
+}
+
+// fitAll shows each sheet whole, both at one zoom, so that widths and discs compare.
+func (s *Station) fitAll() {
+	zoom := 0.0
+	for i, e := range s.editors {
+		if z := e.fitZoom(); s.sheetShown(i) && z > 0 && (zoom == 0 || z < zoom) {
+			zoom = z
+		}
+	}
+	for _, e := range s.editors {
+		e.fit(zoom)
+	}
+}
+
+// sheetShown tells whether a sheet is on screen and has a circuit.
+func (s *Station) sheetShown(i int) bool {
+	return s.editors[i].circuit >= 0 && (!s.wide || i == s.active)
+}
+
+const helpText = `Two circuits, one duty, one clock: the circuit as found on the left, a proposal on the right. Move the clock below, and both show that instant.
+
+The tint of a line is its pressure, its width the flow; the amber disc at a block is the power it turns to heat, or over a cycle its energy. Both sheets have the same scales.
+
+Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
+
+Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
+
+The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time.`

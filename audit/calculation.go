@@ -1,0 +1,297 @@
+package audit
+
+import (
+	"fmt"
+	"strings"
+	"unicode"
+
+	"barlitre/circuit"
+	"barlitre/machines/units"
+)
+
+// LossCalculation opens one loss of a block over one cycle of a duty, or over the
+// year with WholeYear: its law and the equations of the block; the values in them
+// with their origin, the instant of its highest power, the energy, and what it comes
+// to in a year; where the equations come from. The zero Calculation for a loss that
+// the circuit does not have, or that was not solved.
+func (s *Solution) LossCalculation(circuit, duty int, block, kind string, sys units.System) Calculation {
+	if circuit < 0 || circuit >= len(s.Circuits) {
+		return Calculation{}
+	}
+	p := printer{system: sys, currency: s.Tariff.Currency}
+	c := s.Circuits[circuit]
+	law := lawOf(c.Circuit, block, kind)
+	if law == nil {
+		return Calculation{}
+	}
+	formula, peak, energy := law.formula(), "", ""
+	if duty == WholeYear {
+		formula = joined([]string{formula, yearFormula})
+		energy = s.lossOfYear(p, c, block, kind)
+	} else if duty >= 0 && duty < len(c.Duties) {
+		peak, energy = c.highest(p, duty, block, kind), s.lossOfCycle(p, c, duty, block, kind)
+	}
+	if energy == "" {
+		return Calculation{}
+	}
+	lines := []string{law.values(s, p), peak, energy}
+	return Calculation{formula, joined(lines), law.source()}
+}
+
+// joined sets lines that are not empty one below the other.
+func joined(lines []string) string {
+	var out []string
+	for _, l := range lines {
+		if l != "" {
+			out = append(out, l)
+		}
+	}
+	return strings.Join(out, "\n")
+}
+
+// law is what the catalog says of a loss of a block.
+type law struct {
+	kind  *circuit.Kind
+	block *circuit.Block
+	loss  *circuit.LossKind
+}
+
+func lawOf(c *circuit.Circuit, block, kind string) *law {
+	b := c.Block(block)
+	if b == nil {
+		return nil
+	}
+	k := circuit.KindNamed(b.Kind)
+	if k == nil {
+		return nil
+	}
+	for i := range k.Losses {
+		if k.Losses[i].Name == kind {
+			return &law{k, b, &k.Losses[i]}
+		}
+	}
+	return nil
+}
+
+func (l *law) formula() string {
+	lines := []string{strings.TrimSuffix(l.loss.Text, "."), trapezoid}
+	for _, e := range l.kind.Equations {
+		lines = append(lines, e.Text)
+	}
+	return joined(lines)
+}
+
+func (l *law) source() string {
+	lines := []string{fromBalance}
+	for _, e := range l.kind.Equations {
+		if line := l.kind.Title + ": " + e.Source; e.Source != "" && line != lines[len(lines)-1] {
+			lines = append(lines, line)
+		}
+	}
+	return joined(lines)
+}
+
+// values lists the numbers of the block that stand in its formulas, then its choices.
+func (l *law) values(s *Solution, p printer) string {
+	words := symbols(l.formula())
+	var numbers, choices []string
+	for i := range l.kind.Params {
+		q := &l.kind.Params[i]
+		row, ok := parameter(l.kind, l.block, q)
+		switch {
+		case !ok:
+		case q.Type == circuit.Number && words[q.Symbol]:
+			numbers = append(numbers, q.Symbol+" = "+row.Value+" ("+row.Origin+spread(row)+")")
+		case q.Type == circuit.Choice:
+			choices = append(choices, lowerCase(q.Title)+": "+row.Value+" ("+row.Origin+")")
+		}
+	}
+	if words["μ"] {
+		numbers = append(numbers, "μ = "+p.in(s.Conditions.Viscosity, units.DynamicViscosity, 3)+" (oil at "+p.degrees(s.Oil)+")")
+	}
+	if words["ρ"] {
+		numbers = append(numbers, "ρ = "+p.in(s.Conditions.Density, units.Density, 3)+" (oil at "+p.degrees(s.Oil)+")")
+	}
+	return joined([]string{strings.Join(numbers, "; "), strings.Join(choices, "; ")})
+}
+
+// spread says between which limits a value may lie.
+func spread(r ParameterRow) string {
+	switch {
+	case r.Low != "" && r.High != "":
+		return ", " + r.Low + " to " + r.High
+	case r.Low != "":
+		return ", from " + r.Low
+	case r.High != "":
+		return ", up to " + r.High
+	}
+	return ""
+}
+
+func lowerCase(title string) string {
+	if r := []rune(title); len(r) > 1 && !unicode.IsUpper(r[1]) {
+		return string(unicode.ToLower(r[0])) + string(r[1:])
+	}
+	return title
+}
+
+// symbols are the words of a formula.
+func symbols(text string) map[string]bool {
+	out := map[string]bool{}
+	for _, w := range strings.FieldsFunc(text, func(r rune) bool { return !unicode.IsLetter(r) && !unicode.IsDigit(r) }) {
+		out[w] = true
+	}
+	return out
+}
+
+// highest tells of the instant at which the loss is largest, with what the block
+// itself reports then. A long run keeps its peaks, but other quantities only near them.
+func (c *CircuitRun) highest(p printer, duty int, block, kind string) string {
+	plot := c.Duties[duty].Plot
+	if plot == nil {
+		return ""
+	}
+	for i, ch := range plot.Channels {
+		if ch.Role != circuit.Loss || ch.Block != block || ch.Kind != kind {
+			continue
+		}
+		k := &plot.Powers[i]
+		at := 0
+		for n := range k.V {
+			if k.V[n] > k.V[at] {
+				at = n
+			}
+		}
+		if len(k.V) == 0 || k.V[at] <= 0 {
+			return ""
+		}
+		text := fmt.Sprintf("highest at %s: P = %s", p.seconds(k.T[at]), p.power(k.V[at]))
+		return text + plot.meanwhile(p, block, k.T, at)
+	}
+	return ""
+}
+
+// meanwhile lists the signals of a block at one time step.
+func (k *Plot) meanwhile(p printer, block string, times []float64, at int) string {
+	text := ""
+	for i := range k.Signals {
+		t := &k.Signals[i]
+		if !strings.HasPrefix(t.Name, block+".") {
+			continue
+		}
+		v, sign := t.At(times[at]), " = "
+		if k.Thinned {
+			sign = " ≈ "
+		} else if at < len(t.V) {
+			v = t.V[at] // at a step this side of it
+		}
+		d := units.Format(v, units.Preferred(t.Dim, p.system), 3)
+		if t.Dim == units.Ratio {
+			d = units.Format(v, units.Percent, 3)
+		}
+		text += ", " + t.Title + sign + d
+	}
+	return text
+}
+
+func lossIn(rows []LossRow, block, kind string) (float64, bool) {
+	sum, found := 0.0, false
+	for _, r := range rows {
+		if r.Block == block && r.Kind == kind {
+			sum += r.Energy.Total()
+			found = true
+		}
+	}
+	return sum, found
+}
+
+// lossOfCycle goes from a cycle to the year, "" when the circuit does not have the loss.
+func (s *Solution) lossOfCycle(p printer, c *CircuitRun, duty int, block, kind string) string {
+	d := c.Duties[duty]
+	if d.Balance == nil {
+		return ""
+	}
+	b := d.Balance
+	e, ok := lossIn(b.Losses, block, kind)
+	if !ok {
+		return ""
+	}
+	e = nothing(e, b.SupplyIn.Total())
+	return joined([]string{"E = " + overCycle(p, b, e), s.ofYear(p, d, e)})
+}
+
+func overCycle(p printer, b *Balance, e float64) string {
+	return fmt.Sprintf("%s over %s in %d time steps", p.energy(e), p.seconds(b.Cycle), b.Steps)
+}
+
+// ofYear carries the energy of a cycle over to the hours of its duty.
+func (s *Solution) ofYear(p printer, d *DutyRun, e float64) string {
+	n := d.cycles()
+	if !known(n) {
+		return "no hours a year are given, so the duty is left out of the year"
+	}
+	text := fmt.Sprintf("a year: %s × %s cycles (%s / %s) = %s", p.energy(e), p.count(n), p.hours(d.Duty.Hours), p.seconds(d.Balance.Cycle), p.kWh(e*n))
+	return joined([]string{text, s.inMoney(p, e*n)})
+}
+
+func (s *Solution) inMoney(p printer, e float64) string {
+	if !known(s.Tariff.Price) {
+		return ""
+	}
+	return fmt.Sprintf("%s × %s = %s a year", p.kWh(e), p.price(s.Tariff.Price), p.money(e*s.Tariff.Price))
+}
+
+func (s *Solution) lossOfYear(p printer, c *CircuitRun, block, kind string) string {
+	if c.Year == nil {
+		return ""
+	}
+	e, ok := lossIn(c.Year.Losses, block, kind)
+	if !ok {
+		return ""
+	}
+	e = nothing(e, c.Year.Drawn.Total())
+	text := c.sum(p, func(b *Balance) float64 {
+		e, _ := lossIn(b.Losses, block, kind)
+		return nothing(e, b.SupplyIn.Total())
+	})
+	return joined([]string{text + " = " + p.kWh(e), s.inMoney(p, e)})
+}
+
+// RowCalculation opens a row of EnergyRows. Terms that the report has as figures are
+// opened as there.
+func (s *Solution) RowCalculation(circuit, duty int, row EnergyRow, sys units.System) Calculation {
+	if row.Block != "" {
+		return s.LossCalculation(circuit, duty, row.Block, row.Kind, sys)
+	}
+	p := printer{system: sys, currency: s.Tariff.Currency}
+	c := s.Circuits[circuit]
+	if duty == WholeYear {
+		return s.termOfYear(p, c, row)
+	}
+	for _, f := range dutyPage(p, c.Duties[duty]).Figures {
+		if f.Name == row.Name {
+			calc := f.Calculation
+			calc.Numbers = joined([]string{calc.Numbers, s.ofYear(p, c.Duties[duty], row.Energy.Total())})
+			return calc
+		}
+	}
+	return Calculation{}
+}
+
+var ofBalance = map[string]func(*Balance) Split{
+	workAgainst:  (*Balance).WorkPositive,
+	workTaken:    (*Balance).WorkNegative,
+	putIntoStore: (*Balance).StoredEnergy,
+	returnedRow:  func(b *Balance) Split { return b.Returned },
+	drawnRow:     func(b *Balance) Split { return b.SupplyIn },
+}
+
+func (s *Solution) termOfYear(p printer, c *CircuitRun, row EnergyRow) Calculation {
+	of := ofBalance[row.Name]
+	if of == nil || c.Year == nil {
+		return Calculation{}
+	}
+	text := c.sum(p, func(b *Balance) float64 { return nothing(of(b).Total(), b.SupplyIn.Total()) })
+	return Calculation{yearFormula, joined([]string{text + " = " + p.kWh(row.Energy.Total()), s.inMoney(p, row.Energy.Total())}),
+		"balance of each duty; hours and price from " + fromFile}
+}
