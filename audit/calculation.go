@@ -2,6 +2,7 @@ package audit
 
 import (
 	"fmt"
+	"math"
 	"strings"
 	"unicode"
 
@@ -185,6 +186,7 @@ func (k *Plot) meanwhile(p printer, block string, times []float64, at int) strin
 		} else if at < len(t.V) {
 			v = t.V[at] // at a step this side of it
 		}
+		v = nothing(v, largest(t.V))
 		d := units.Format(v, units.Preferred(t.Dim, p.system), 3)
 		if t.Dim == units.Ratio {
 			d = units.Format(v, units.Percent, 3)
@@ -192,6 +194,15 @@ func (k *Plot) meanwhile(p printer, block string, times []float64, at int) strin
 		text += ", " + t.Title + sign + d
 	}
 	return text
+}
+
+// largest returns the largest magnitude.
+func largest(v []float64) float64 {
+	most := 0.0
+	for _, x := range v {
+		most = math.Max(most, math.Abs(x))
+	}
+	return most
 }
 
 func lossIn(rows []LossRow, block, kind string) (float64, bool) {

@@ -111,8 +111,7 @@ func (k *checker) fed(control *Block) {
 	if control.Kind != kindValve {
 		return
 	}
-	w := &compiler{Compiled: &Compiled{circuit: k.c}, of: k.of}
-	for n := range w.reach(PortRef{control.ID, "P"}, false) {
+	for n := range reach(k.c, k.of, PortRef{control.ID, "P"}) {
 		if n.src != "" {
 			return
 		}
@@ -157,36 +156,16 @@ var outlets = map[string]map[string][]string{
 	kindCylinder: {"A": {"B"}, "B": {"A"}}, kindChargePump: {"P": {"T"}, "S": {"P"}},
 }
 
-// escapes reports whether oil can get from a node to a tank or source, not
-// through the block it comes from nor by the relief valves alone.
+// escapes reports whether oil can get from a node to a tank or source, not through
+// the block it comes from. A pump takes it too: closed loops go round through it.
 func (k *checker) escapes(start *net, not string) bool {
-	seen := map[*net]bool{start: true}
-	queue := []*net{start}
-	for len(queue) > 0 {
-		n := queue[0]
-		queue = queue[1:]
-		if n.tank != "" || n.src != "" {
-			return true
+	pump := false
+	ways := func(b *Block, port string) []string {
+		pump = pump || b.Kind == kindPump
+		if b.ID == not || b.Kind == kindRelief {
+			return nil
 		}
-		for _, p := range n.ports {
-			b := k.c.Block(p.Block)
-			if b.ID == not {
-				// A closed loop: through pump and actuator it goes round.
-				continue
-			}
-			if b.Kind == kindPump {
-				return true
-			}
-			if b.Kind == kindRelief {
-				continue
-			}
-			for _, o := range outlets[b.Kind][p.Port] {
-				if m := k.of[PortRef{b.ID, o}]; m != nil && !seen[m] {
-					seen[m] = true
-					queue = append(queue, m)
-				}
-			}
-		}
+		return outlets[b.Kind][port]
 	}
-	return false
+	return flood(k.c, k.of, start, ways, func(n *net, _ int) bool { return n.tank != "" || n.src != "" || pump }) || pump
 }

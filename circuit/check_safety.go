@@ -37,38 +37,25 @@ func (k *checker) relieved(b *Block, port, name string) {
 	k.say(Caution, b, "", "%s (%s.%s) can be closed off from every relief valve: pressure there has no limit. Put a relief valve on it; who may set it and how is for the maker of the machine and the local rules", name, b.ID, port)
 }
 
-// hasRelief reports whether oil reaches a relief valve from a node without
-// passing a part that can close.
+// free lists the ways through parts that cannot close in their free direction.
+var free = map[string]map[string][]string{
+	kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}},
+	kindCheck: {"in": {"out"}}, kindPilotCheck: {"V": {"C"}}, kindCounterbalance: {"V": {"C"}},
+}
+
+// hasRelief reports whether oil reaches a relief valve, tank or source from a node
+// without passing a part that can close. A counterbalance valve opens by itself.
 func (k *checker) hasRelief(start *net) bool {
-	open := map[string]map[string][]string{
-		kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}}, kindCheck: {"in": {"out"}},
-		kindPilotCheck: {"V": {"C"}}, kindCounterbalance: {"V": {"C"}},
-	}
-	seen := map[*net]bool{start: true}
-	queue := []*net{start}
-	for len(queue) > 0 {
-		n := queue[0]
-		queue = queue[1:]
-		if n.tank != "" || n.src != "" {
-			return true
-		}
+	ways := func(b *Block, port string) []string { return free[b.Kind][port] }
+	return flood(k.c, k.of, start, ways, func(n *net, _ int) bool {
 		for _, p := range n.ports {
-			b := k.c.Block(p.Block)
-			if (b.Kind == kindRelief && p.Port == "P") || (b.Kind == kindChargePump && p.Port == "P") {
+			switch kind := k.c.Block(p.Block).Kind; {
+			case (kind == kindRelief || kind == kindChargePump) && p.Port == "P", kind == kindCounterbalance && p.Port == "C":
 				return true
 			}
-			if b.Kind == kindCounterbalance && p.Port == "C" {
-				return true // opens by itself at its setting
-			}
-			for _, o := range open[b.Kind][p.Port] {
-				if m := k.of[PortRef{b.ID, o}]; m != nil && !seen[m] {
-					seen[m] = true
-					queue = append(queue, m)
-				}
-			}
 		}
-	}
-	return false
+		return n.tank != "" || n.src != ""
+	})
 }
 
 // suspended cautions where a load stands on a hydraulic lock that leaks or on a pump.

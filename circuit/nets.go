@@ -115,13 +115,26 @@ func netsOf(c *Circuit) (nets []*net, of map[PortRef]*net) {
 	return nets, of
 }
 
-// others returns the ports of a net that are not p.
-func (n *net) others(p PortRef) []PortRef {
-	var out []PortRef
-	for _, q := range n.ports {
-		if q != p {
-			out = append(out, q)
+// flood follows oil from a node to all it gets to, where ways gives the ports that
+// it leaves a block by, for the port it enters. found is asked of each node, with the
+// number of blocks on the way; true ends the search.
+func flood(c *Circuit, of map[PortRef]*net, start *net, ways func(b *Block, port string) []string, found func(n *net, blocks int) bool) bool {
+	dist := map[*net]int{start: 0}
+	for queue := []*net{start}; len(queue) > 0; queue = queue[1:] {
+		n := queue[0]
+		if found(n, dist[n]) {
+			return true
+		}
+		for _, p := range n.ports {
+			b := c.Block(p.Block)
+			for _, o := range ways(b, p.Port) {
+				m := of[PortRef{b.ID, o}]
+				if _, seen := dist[m]; m != nil && !seen {
+					dist[m] = dist[n] + 1
+					queue = append(queue, m)
+				}
+			}
 		}
 	}
-	return out
+	return false
 }

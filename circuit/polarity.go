@@ -29,10 +29,11 @@ func (p polarity) fixed() float64 {
 	return 1
 }
 
-// passes lists, for the kinds that oil passes, which of their ports are joined.
-var passes = map[string][][2]string{
-	"line": {{"A", "B"}}, "filter": {{"A", "B"}}, "orifice": {{"A", "B"}}, "check": {{"in", "out"}},
-	"pilot_check": {{"V", "C"}}, "counterbalance": {{"V", "C"}}, "compensator": {{"P", "A"}},
+// passes lists the ways through parts that oil can pass at all.
+var passes = map[string]map[string][]string{
+	kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}},
+	kindCheck: {"in": {"out"}, "out": {"in"}}, kindPilotCheck: {"V": {"C"}, "C": {"V"}}, kindCounterbalance: {"V": {"C"}, "C": {"V"}},
+	kindCompensator: {"P": {"A"}, "A": {"P"}},
 }
 
 // polarityOf finds which port of an axis' actuator the port from is nearest to:
@@ -43,9 +44,9 @@ func (k *compiler) polarityOf(from PortRef, axis int) polarity {
 	if b == nil {
 		return 1
 	}
-	reach := k.reach(from, false)
-	dA, okA := reach[k.of[PortRef{b.ID, "A"}]]
-	dB, okB := reach[k.of[PortRef{b.ID, "B"}]]
+	near := reach(k.circuit, k.of, from)
+	dA, okA := near[k.of[PortRef{b.ID, "A"}]]
+	dB, okB := near[k.of[PortRef{b.ID, "B"}]]
 	switch {
 	case okA && (!okB || dA <= dB):
 		return 1
@@ -63,59 +64,42 @@ func (k *compiler) shaftPolarity(b *Block, axis int) polarity {
 	}
 	for _, p := range n.ports {
 		if o := k.circuit.Block(p.Block); o.Kind == kindPump {
-			if q := (PortRef{o.ID, "P"}); len(k.reach(q, true)) > 1 {
-				return k.polarityOf(q, axis)
+			q := PortRef{o.ID, "P"}
+			if p := k.polarityOf(q, axis); p != byDemand || k.directed(axis) {
+				return p
 			}
 		}
 	}
 	return 1
 }
 
+// directed reports whether a valve chooses the direction of an axis.
+func (k *compiler) directed(axis int) bool {
+	for i := range k.circuit.Blocks {
+		if k.circuit.Blocks[i].Word("directs") == k.axes[axis].Name {
+			return true
+		}
+	}
+	return false
+}
+
 // reach returns the nets that oil can get to from a port, with the number of
 // blocks on the way; not through tanks, sources or the block it starts from.
-func (k *compiler) reach(from PortRef, throughValves bool) map[*net]int {
-	start := k.of[from]
+func reach(c *Circuit, of map[PortRef]*net, from PortRef) map[*net]int {
 	dist := map[*net]int{}
+	start := of[from]
 	if start == nil {
 		return dist
 	}
-	dist[start] = 0
-	queue := []*net{start}
-	for len(queue) > 0 {
-		n := queue[0]
-		queue = queue[1:]
-		if n.tank != "" || n.src != "" {
-			continue
+	ways := func(b *Block, port string) []string {
+		if n := of[PortRef{b.ID, port}]; b.ID == from.Block || n.tank != "" || n.src != "" {
+			return nil
 		}
-		for _, p := range n.ports {
-			b := k.circuit.Block(p.Block)
-			if b.ID == from.Block {
-				continue
-			}
-			ways := passes[b.Kind]
-			if throughValves && b.Kind == kindValve {
-				ways = [][2]string{{"P", "A"}, {"P", "B"}}
-			}
-			for _, w := range ways {
-				other := ""
-				switch p.Port {
-				case w[0]:
-					other = w[1]
-				case w[1]:
-					other = w[0]
-				default:
-					continue
-				}
-				o := k.of[PortRef{b.ID, other}]
-				if o == nil {
-					continue
-				}
-				if _, seen := dist[o]; !seen {
-					dist[o] = dist[n] + 1
-					queue = append(queue, o)
-				}
-			}
-		}
+		return passes[b.Kind][port]
 	}
+	flood(c, of, start, ways, func(n *net, blocks int) bool {
+		dist[n] = blocks
+		return false
+	})
 	return dist
 }

@@ -286,3 +286,44 @@ C1 cylinder; axis: ram; hold: valve; bore: 80 mm; rod: 56 mm
 		}
 	}
 }
+
+// A pump that follows an axis through a valve that only chooses the direction
+// moves it both ways, without throttling beyond the open edges; so does a motor of
+// variable speed.
+func TestDirectingValve(t *testing.T) {
+	for name, drive := range map[string]string{
+		"variable pump": `
+M1 electric_motor; rated_power: 22 kW; efficiency: 0.93
+P1 pump; displacement: 45 cm3/rev; follows: ram`,
+		"variable speed": `
+M1 electric_motor; rated_power: 22 kW; efficiency: 0.93; follows: ram; max_speed: 2500 rpm
+P1 pump; displacement: 45 cm3/rev`,
+	} {
+		r := record(t, drive+`
+TK tank
+RV1 relief; crack: 200 bar
+V1 valve; directs: ram; nominal_flow: 100 L/min
+C1 cylinder; axis: ram; hold: valve; bore: 80 mm; rod: 56 mm; friction: 800 N
+CV1 check
+- M1.shaft P1.shaft
+- P1.S TK.T
+- P1.P RV1.P V1.P
+- RV1.T TK.T
+- V1.A C1.A CV1.out
+- V1.B C1.B
+- V1.T TK.T
+- CV1.in TK.T
+`, ramAxis, ramDuty)
+		for i, a := range r.axes {
+			if d := math.Abs(a[0].Speed - a[0].Demand); d > 1e-6 && !a[0].Standing {
+				t.Fatalf("%s: at %g s the speed is %g, asked %g", name, r.t[i], a[0].Speed, a[0].Demand)
+			}
+			if u := math.Abs(r.sig["V1.u"][i]); !a[0].Standing && u != 1 {
+				t.Fatalf("%s: the directing valve is open %g at %g s", name, u, r.t[i])
+			}
+			if q := r.sig["RV1.P.q"][i]; q > 1e-9 {
+				t.Fatalf("%s: %g m³/s over the relief valve at %g s", name, q, r.t[i])
+			}
+		}
+	}
+}

@@ -44,7 +44,6 @@ func (d *Document) save(now state) error {
 	if disk, err := os.ReadFile(now.Path); err == nil && !bytes.Equal(disk, saved) && !bytes.Equal(disk, now.text) {
 		return fmt.Errorf("save %s: %w%s", now.Path, ErrChanged, d.safe(now))
 	}
-	d.session.drop(); d.session=nil
 	if err := d.store(now, now.Path); err != nil {
 		return err
 	}

@@ -330,6 +330,38 @@ func TestOpenDropsSolution(t *testing.T) {
 	let <- struct{}{}
 }
 
+// Nobody hears of the solution of a revision before hearing of the revision, however
+// quick the solver and slow the listener.
+func TestEditedBeforeSolved(t *testing.T) {
+	begun, let := make(chan struct{}, 10), make(chan struct{}, 10)
+	solve := func(_ context.Context, f *audit.File, _ audit.Options) (*audit.Solution, error) {
+		begun <- struct{}{}
+		<-let
+		return &audit.Solution{File: f}, nil
+	}
+	told := newEvents()
+	d := newDocument(Options{Notify: func(e Event) {
+		if e.Kind == Edited {
+			let <- struct{}{} // the solver ends what it has
+			let <- struct{}{} // and would be done with this revision at once
+			time.Sleep(20 * time.Millisecond)
+		}
+		told.take(e)
+	}}, solve)
+	defer d.Abandon()
+	check(t, d.OpenSample(press))
+	<-begun
+	check(t, d.Set("As found/RV1.set", "231 bar"))
+	told.wait(t, Solved, d.Revision())
+	edited := false
+	for _, e := range told.all() {
+		edited = edited || e.Kind == Edited
+		if e.Kind == Solved && e.Revision == d.Revision() && !edited {
+			t.Error("solved before edited")
+		}
+	}
+}
+
 // Findings are those of the file at once, and those of the runs when they are done.
 func TestFindings(t *testing.T) {
 	b := newBench(t, audit.Solve, Options{})

@@ -98,7 +98,7 @@ func (f *Frame) build() {
 	}
 	bottom := container.NewVBox(widget.NewSeparator(), f.strip.content, f.status)
 	top := container.NewVBox(f.verdict, widget.NewSeparator())
-	f.win.SetContent(container.NewBorder(top, bottom, f.rail.content, nil, f.body))
+	f.win.SetContent(widgets.NewTips(container.NewBorder(top, bottom, f.rail.content, nil, f.body)))
 	f.buildMenu()
 	f.shortcuts()
 	f.show(0)

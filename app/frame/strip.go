@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"image/color"
 	"math"
+	"sort"
 	"time"
 
 	"fyne.io/fyne/v2"
@@ -24,7 +25,7 @@ const stripHeight = 150
 type strip struct {
 	f       *Frame
 	figure  *clockFigure
-	play    *widget.Button
+	play    *widgets.TipButton
 	picker  *widget.Select
 	plot    figures.Plot
 	area    figures.PlotArea
@@ -36,7 +37,7 @@ func newStrip(f *Frame) *strip {
 	s := &strip{f: f}
 	s.figure = newClockFigure(s)
 	widgets.Name(s.figure, "strip")
-	s.play = widgets.Name(widget.NewButton("Play", s.toggle), "strip.play")
+	s.play = widgets.Name(widgets.NewTipButton("Play", "let the clock run (Space in the strip)", s.toggle), "strip.play")
 	s.picker = widgets.Name(widget.NewSelect(nil, func(name string) {
 		if s.own {
 			return
@@ -158,7 +159,7 @@ func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
 	x := 6 + s.area.XAt(s.f.clock)
 	p.Polyline([]pen.Pt{{X: x, Y: 14}, {X: x, Y: h - 22}}, false, pal.Danger, pen.Stroke{W: 1.4, C: pal.Danger})
 	p.Polyline([]pen.Pt{{X: x - 5, Y: 8}, {X: x + 5, Y: 8}, {X: x, Y: 16}}, true, pal.Danger, pen.Stroke{})
-	text := s.f.Local(units.Number(s.f.clock, 4)) + " s"
+	text := s.f.Local(s.atClock())
 	tw := p.TextWidth(text, 11, true) + 10
 	bx := x + 8
 	if bx+tw > w-4 {
@@ -168,8 +169,33 @@ func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
 	p.Text(pen.Pt{X: bx + 5, Y: 14}, text, 11, pal.Ink, pen.Left, true)
 	return []widgets.Part{
 		{Name: "tracks", Text: fmt.Sprint(len(s.plot.Lanes)), X: 6 + s.area.X, Y: 0, W: s.area.W, H: h},
-		{Name: "clock", Text: text, X: x - 6, Y: 0, W: 12, H: h, Click: true},
+		{Name: "clock", Text: s.f.Local(units.Number(s.f.clock, 4)) + " s", X: x - 6, Y: 0, W: 12, H: h, Click: true},
 	}
+}
+
+// atClock writes the time and the values of the tracks at it.
+func (s *strip) atClock() string {
+	text := units.Number(s.f.clock, 4) + " s"
+	for _, l := range s.plot.Lanes {
+		for _, x := range l.Series {
+			text += " · " + units.Number(at(x.X, x.Y, s.f.clock), 3) + " " + l.Unit
+		}
+	}
+	return text
+}
+
+// at interpolates between rows; at a step it takes the row after it.
+func at(t, v []float64, x float64) float64 {
+	i := sort.Search(len(t), func(i int) bool { return t[i] > x })
+	switch {
+	case len(t) == 0:
+		return math.NaN()
+	case i == 0:
+		return v[0]
+	case i == len(t):
+		return v[len(v)-1]
+	}
+	return v[i-1] + (v[i]-v[i-1])*(x-t[i-1])/(t[i]-t[i-1])
 }
 
 // clockFigure is the strip's figure: the clock follows click, drag and arrow keys.

@@ -20,7 +20,8 @@ const (
 
 // Shares of the largest value below which something is not shown.
 const (
-	flowShown     = 1e-3 // chevrons, widths and numbers of flows
+	flowShown     = 1e-3 // chevrons
+	flowNumber    = 5e-3 // numbers of flows
 	pressureShown = 2e-3 // numbers of pressures
 	heatShown     = 0.01 // numbers of heats
 	discShown     = 1e-4 // discs

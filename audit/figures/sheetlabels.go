@@ -275,9 +275,9 @@ func (p *part) spots(w, h float64, rows []row, cost, reach float64) []labelSpot 
 				up = -3
 			}
 			for _, y := range []float64{b.Min.Y, cy - h/2, b.Max.Y - h, b.Min.Y - h/2, b.Max.Y - h/2, b.Min.Y - h, b.Max.Y} {
-				off := math.Abs(y+h/2-cy) * 0.15
+				off := math.Abs(y+h/2-cy) * 0.3
 				add(b.Max.X+labelGap+d, y, pen.Left, far+off)
-				add(b.Min.X-labelGap-d-w, y, pen.Right, far+off+2)
+				add(b.Min.X-labelGap-d-w, y, pen.Right, far+off+1.5)
 			}
 			for _, x := range []float64{b.Min.X, cx - w/2, b.Max.X - w, b.Max.X, b.Min.X - w, cx + 1.2, cx - 1.2 - w} {
 				al := pen.Left

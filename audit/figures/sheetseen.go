@@ -56,7 +56,7 @@ func (s *Sheet) look(run *audit.DutyRun) {
 		now := s.flows(st)
 		for k := range s.stretches {
 			n := now[s.stretches[k].net]
-			s.seen.flow[k] = s.seen.flow[k] || ratio(math.Abs(s.stretches[k].along(n)), most.Flow) >= flowShown
+			s.seen.flow[k] = s.seen.flow[k] || ratio(math.Abs(s.stretches[k].along(n)), most.Flow) >= flowNumber
 			s.seen.pressure[k] = s.seen.pressure[k] || ratio(n.pressure, most.Pressure) >= pressureShown
 		}
 	}

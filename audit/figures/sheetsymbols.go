@@ -125,7 +125,7 @@ func movedPrim(q drawing.Prim, by drawing.Pt) drawing.Prim {
 // motion draws an arrow beside the rod of a cylinder that moves.
 func (d *sheetDrawing) motion(p *part) {
 	v, ok := d.st.Signal(p.id + ".v")
-	if p.base.Name != "cylinder" || !ok || v == 0 || !finite(v) {
+	if p.base.Name != "cylinder" || !ok || math.Abs(v) < atRest || !finite(v) {
 		return
 	}
 	dir := p.rodDir()

@@ -2,6 +2,7 @@ package figures
 
 import (
 	"image/color"
+	"math"
 
 	"barlitre/audit/pen"
 	"barlitre/circuit"
@@ -126,11 +127,8 @@ func (d *sheetDrawing) lineWords(st *stretch, r row) []word {
 	if r != rowFlow && ratio(n.pressure, d.scales.Pressure) >= pressureShown {
 		pressure = units.Format(n.pressure, units.Preferred(units.Pressure, d.opt.System), 3)
 	}
-	if q := st.along(n); r != rowPressure && d.flowing(q) {
-		if q < 0 {
-			q = -q
-		}
-		flow = units.Format(q, units.Preferred(units.Flow, d.opt.System), 3)
+	if q := st.along(n); r != rowPressure && ratio(math.Abs(q), d.scales.Flow) >= flowNumber {
+		flow = units.Format(math.Abs(q), units.Preferred(units.Flow, d.opt.System), 3)
 	}
 	text := pressure + flow
 	if pressure != "" && flow != "" {

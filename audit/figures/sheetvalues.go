@@ -113,6 +113,10 @@ func (p *part) varies() bool {
 	return false
 }
 
+// atRest is below what any quantity of a block is worth a number: a micrometre a second,
+// a microradian a second, a millionth of a setting [SI].
+const atRest = 1e-6
+
 // live is what a block does at the instant shown, "" for a block that only stands
 // there. With a nil state it is a text as wide as any.
 func (p *part) live(st *SheetState, sys units.System) string {
@@ -120,6 +124,9 @@ func (p *part) live(st *SheetState, sys units.System) string {
 		v, ok := st.Signal(p.id + "." + signal)
 		if st == nil {
 			v, ok = typical, true
+		}
+		if math.Abs(v) < atRest {
+			v = 0
 		}
 		u, digits := units.Preferred(d, sys), 3
 		if d == units.Ratio {

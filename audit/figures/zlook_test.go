@@ -6,11 +6,42 @@ import (
 	"image"
 	"image/png"
 	"os"
+	"path/filepath"
 	"testing"
 
 	"barlitre/audit"
 	"barlitre/audit/pen"
+	"barlitre/circuit"
 )
+
+func TestZAuto(t *testing.T) {
+	dir := os.Getenv("LOOK")
+	if dir == "" {
+		t.Skip()
+	}
+	for _, name := range []string{"testdata/full", "testdata/trials/c1", "testdata/trials/c3", "testdata/trials/c5", "testdata/published/m17_stalled", "testdata/published/l10_chain"} {
+		f, fs := audit.Read("../" + name + ".yaml")
+		if f == nil {
+			t.Fatal(fs)
+		}
+		sol, err := audit.Solve(context.Background(), f, audit.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for ci, c := range sol.Circuits {
+			s := NewSheet(c.Circuit).Labelled(c.Duties...)
+			st := StateAt(c.Duties[0], c.Duties[0].Duty.Cycle()/3)
+			w, h := s.Size()
+			img := image.NewRGBA(image.Rect(0, 0, int(w*9), int((h+LegendHeight)*9)))
+			r := pen.NewRaster(img)
+			r.Clear(Light.Card)
+			s.Draw(r, 0, 0, 9, st, SheetOptions{Palette: Light, Scales: ScalesOf(c.Duties...), Legend: true, Findings: map[string]circuit.Level{"P1": circuit.Warns, "V1": circuit.Stops}})
+			out, _ := os.Create(fmt.Sprintf("%s/auto-%s-%d.png", dir, filepath.Base(name), ci))
+			png.Encode(out, img)
+			out.Close()
+		}
+	}
+}
 
 func TestZLook(t *testing.T) {
 	dir := os.Getenv("LOOK")

@@ -1,0 +1,216 @@
+// Package heat is the station for the heat put into the oil: its course by block, its
+// means, and the cooler that it asks for. Everything shown comes from the report and the
+// courses of the solution.
+package heat
+
+import (
+	"slices"
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+)
+
+// Heat is the station.
+type Heat struct {
+	ctx     station.Context
+	content fyne.CanvasObject
+	plot    *plot
+	table   *widgets.FigureTable
+	oil     *temperature
+	air     *temperature
+	empty   *widget.Label
+	tableOf *fyne.Container // the table with its head, hidden while there is none
+	fault   *widget.Label
+	basis   *widget.Label
+	caution *widget.Label
+	hot     *widget.Label
+}
+
+// New makes the station.
+func New(ctx station.Context) station.Station {
+	h := &Heat{ctx: ctx}
+	h.build()
+	return h
+}
+
+// Name is the word on the rail.
+func (h *Heat) Name() string { return "Heat" }
+
+// Content is the station's page.
+func (h *Heat) Content() fyne.CanvasObject { return h.content }
+
+// Help is the short help.
+func (h *Heat) Help() string {
+	return "The areas show how much heat each block puts into the oil at every instant of one cycle, the largest lowest; all circuits have the same scale. " +
+		"A click into them sets the clock. The dashed line is the mean of the cycle.\n\n" +
+		"The table gives the mean heat of each duty and of all running hours, and the cooler this asks for at the oil and air temperature beside it: " +
+		"heat divided by the difference of the two. Type another temperature and the figures follow. A click on a figure, or Enter on it, opens its calculation.\n\n" +
+		"Choose a cooler for the hottest duty, not for the mean of the year. Walls of tank and pipes are not credited: they are a reserve."
+}
+
+func wrapped(name string) *widget.Label {
+	l := widgets.Name(widget.NewLabel(""), name)
+	l.Wrapping = fyne.TextWrapWord
+	return l
+}
+
+func (h *Heat) build() {
+	h.plot = newPlot(h.ctx)
+	h.table = widgets.Name(widgets.NewFigureTable(h.ctx.Explain, h.ctx.Local), "heat.table")
+	h.oil = newTemperature(h.ctx, "Oil temperature", "oil.temperature", "heat.oil")
+	h.air = newTemperature(h.ctx, "Air temperature", "air.temperature", "heat.air")
+	h.empty, h.fault, h.basis = wrapped("heat.empty"), wrapped("heat.fault"), wrapped("heat.basis")
+	h.caution, h.hot = wrapped("heat.caution"), wrapped("heat.hot")
+	h.fault.Importance = widget.DangerImportance
+	h.basis.Importance = widget.LowImportance
+	h.tableOf = container.NewVBox(h.table, h.fault, h.basis)
+	side := container.NewVBox(
+		widgets.Card("Temperatures", container.NewVBox(h.oil.content, h.air.content, h.caution)),
+		widget.NewSeparator(),
+		widgets.Card("Mean heat and the cooler for it", container.NewVBox(h.empty, h.tableOf)),
+		h.hot,
+	)
+	split := container.NewHSplit(widgets.Spaced(h.plot.content), container.NewVScroll(widgets.Spaced(side)))
+	split.Offset = 0.62
+	h.content = split
+}
+
+// Changed shows anew what changed.
+func (h *Heat) Changed(w station.What) {
+	if w.Has(station.Model | station.Settings) {
+		h.oil.show(h.ctx.Doc().File())
+		h.air.show(h.ctx.Doc().File())
+	}
+	if w.Has(station.Solution | station.Selection | station.Settings | station.Model) {
+		h.figures()
+		h.plot.load()
+	}
+	if w.Has(station.Clock) {
+		h.plot.clock()
+	}
+}
+
+// figures fills the table and what is said about it.
+func (h *Heat) figures() {
+	r, s := h.ctx.Report(), h.ctx.Solution()
+	solved := false
+	if r != nil {
+		for _, c := range r.Circuits {
+			solved = solved || c.Solved
+		}
+	}
+	if !solved {
+		h.empty.SetText(emptyText(r))
+		h.empty.Show()
+		h.tableOf.Hide()
+		h.caution.SetText("")
+		h.hot.SetText("")
+		return
+	}
+	h.empty.Hide()
+	h.tableOf.Show()
+	head, rows := rows(r)
+	h.table.Set(head, rows)
+	h.fault.SetText(h.ctx.Local(fault(s)))
+	h.fault.Hidden = h.fault.Text == ""
+	h.basis.SetText(h.ctx.Local(basis(r)))
+	h.caution.SetText("")
+	if len(r.Assumptions) > 0 { // the first says what oil all circuits have, and what follows
+		h.caution.SetText("▲ " + h.ctx.Local(r.Assumptions[0]))
+	}
+	h.hot.SetText("")
+	for _, c := range r.Cautions {
+		if c.Topic == "Hot surfaces" {
+			h.hot.SetText("▲ " + c.Topic + ": " + h.ctx.Local(c.Text))
+		}
+	}
+}
+
+// emptyText says what belongs here and how to get it.
+func emptyText(r *audit.Report) string {
+	if r == nil {
+		return "The heat of each circuit stands here as soon as there is a result. Draw a circuit under Circuit and give its duty under Duty; it is then solved by itself."
+	}
+	return "No circuit could be solved, so there is no heat to show. Circuit lists under its findings what is missing; a click on one leads to it."
+}
+
+// rows sets the report's heat figures side by side, means first, then coolers.
+func rows(r *audit.Report) (head []string, rows []widgets.FigureRow) {
+	head = []string{""}
+	var names []string
+	for _, c := range r.Circuits {
+		if !c.Solved {
+			continue
+		}
+		head = append(head, c.Name)
+		for _, f := range c.Heat {
+			if !slices.Contains(names, f.Name) {
+				names = append(names, f.Name)
+			}
+		}
+	}
+	for _, group := range []struct{ title, prefix string }{
+		{"Mean heat to the oil", "mean heat to the oil, "}, {"Cooler for it", "cooler for it, "},
+	} {
+		first := true
+		for _, name := range names {
+			rest, ok := strings.CutPrefix(name, group.prefix)
+			if !ok {
+				continue
+			}
+			if first {
+				rows = append(rows, widgets.FigureRow{Name: group.title})
+				first = false
+			}
+			row := widgets.FigureRow{Name: rest}
+			for _, c := range r.Circuits {
+				if c.Solved {
+					row.Cells = append(row.Cells, named(c.Heat, name))
+				}
+			}
+			rows = append(rows, row)
+		}
+	}
+	return head, rows
+}
+
+func named(fs []audit.Figure, name string) audit.Figure {
+	for _, f := range fs {
+		if f.Name == name {
+			return f
+		}
+	}
+	return audit.Figure{Name: name, Text: "–"}
+}
+
+// fault is why no cooler is named.
+func fault(s *audit.Solution) string {
+	for _, c := range s.Circuits {
+		if c.Heat != nil && c.Heat.Fault != "" {
+			return c.Heat.Fault
+		}
+	}
+	return ""
+}
+
+// basis is what the report assumes of coolers.
+func basis(r *audit.Report) string {
+	for _, a := range r.Assumptions {
+		if _, ok := strings.CutPrefix(a, "Coolers are named for"); ok {
+			return a
+		}
+	}
+	return ""
+}
+
+// Mend reports that no cooler can be named though there is heat.
+func (h *Heat) Mend() bool {
+	s := h.ctx.Solution()
+	return s != nil && len(s.Circuits) > 0 && fault(s) != ""
+}

@@ -1,0 +1,102 @@
+package sheet
+
+import (
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/layout"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/widgets"
+)
+
+// bar holds the buttons above the sheets.
+type bar struct {
+	s                      *Station
+	fit, wide, heat, panel *widget.Button
+	content                *fyne.Container
+}
+
+func newBar(s *Station) *bar {
+	b := &bar{s: s}
+	button := func(name string, do func()) *widget.Button {
+		w := widget.NewButton("", do)
+		w.Importance = widget.LowImportance
+		return widgets.Name(w, name)
+	}
+	b.fit = button("sheet.fit", s.fitAll)
+	b.wide = button("sheet.wide", func() { s.setWide(!s.wide) })
+	b.heat = button("sheet.heat", func() { s.setEnergy(!s.energy) })
+	b.panel = button("sheet.panel", s.togglePanel)
+	b.content = container.NewHBox(b.fit, b.wide, b.heat, layout.NewSpacer(), b.panel)
+	b.fit.SetText("Fit (F)")
+	b.wide.SetText("Show one sheet (W)")
+	b.heat.SetText("Show heat over the cycle")
+	b.panel.SetText("Fold properties")
+	return b
+}
+
+// reload says on each button what it does next.
+func (b *bar) reload() {
+	set := func(w *widget.Button, text string) {
+		if w.Text != text {
+			w.SetText(text)
+		}
+	}
+	set(b.wide, pick(b.s.wide, "Show both sheets (W)", "Show one sheet (W)"))
+	set(b.heat, pick(b.s.energy, "Show heat at the clock", "Show heat over the cycle"))
+	set(b.panel, pick(b.s.panelOpen(), "Fold properties", "Show properties"))
+}
+
+func (b *bar) recolour() { b.content.Refresh() }
+
+func pick(on bool, yes, no string) string {
+	if on {
+		return yes
+	}
+	return no
+}
+
+// picker chooses the proposal on the second sheet; it is shown when there are several.
+type picker struct {
+	s       *Station
+	sel     *widget.Select
+	filling bool
+}
+
+func newPicker(s *Station) *picker {
+	p := &picker{s: s}
+	p.sel = widget.NewSelect(nil, p.chosen)
+	p.sel.Hide()
+	widgets.Name(p.sel, "sheet.proposal")
+	return p
+}
+
+func (p *picker) chosen(name string) {
+	if p.filling {
+		return
+	}
+	p.s.proposal = name
+	for i, c := range p.s.ctx.Doc().File().Circuits {
+		if c.Name == name {
+			p.s.ctx.Select(i, "")
+		}
+	}
+}
+
+func (p *picker) reload() {
+	left, right := p.s.editors[0].circuit, p.s.editors[1].circuit
+	var names []string
+	for i, c := range p.s.ctx.Doc().File().Circuits {
+		if i != left {
+			names = append(names, c.Name)
+		}
+	}
+	show(p.sel, len(names) > 1)
+	p.filling = true
+	defer func() { p.filling = false }()
+	p.sel.Options = names
+	if right >= 0 && p.sel.Selected != p.s.editors[1].name {
+		p.sel.SetSelected(p.s.editors[1].name)
+	}
+	p.sel.Refresh()
+}

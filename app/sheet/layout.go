@@ -1,0 +1,258 @@
+package sheet
+
+import (
+	"fmt"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/canvas"
+	"fyne.io/fyne/v2/container"
+
+	"barlitre/app/widgets"
+	"barlitre/audit/figures"
+	"barlitre/audit/pen"
+	"barlitre/circuit"
+)
+
+// fold says what the user chose for the property panel.
+type fold int
+
+const (
+	foldAuto   fold = iota // open unless the window is narrow
+	foldOpen               // opened in a narrow window
+	foldClosed             // closed in a wide one
+)
+
+// Sizes of the page [units at scale 1].
+const (
+	narrowBelow = 1200 // width of the window under which the panel folds
+	panelWidth  = 300
+	edgeWidth   = 26
+	gapWidth    = 8
+	panelShare  = 0.64 // of the height; the findings have the rest
+)
+
+// pageLayout places bar, sheets and panel.
+type pageLayout struct{ s *Station }
+
+func (s *Station) layOut() *fyne.Container {
+	return container.New(pageLayout{s}, s.bar.content, s.cards[0].content, s.cards[1].content, s.panel.content, s.findings.content, s.edge)
+}
+
+// MinSize lets the window be small; the sheets and the panel scroll.
+func (l pageLayout) MinSize([]fyne.CanvasObject) fyne.Size {
+	return fyne.NewSize(l.s.bar.content.MinSize().Width+2*gapWidth, 280)
+}
+
+// Layout places all and hides what does not belong on the page now.
+func (l pageLayout) Layout(_ []fyne.CanvasObject, size fyne.Size) {
+	s, k := l.s, widgets.Scale()
+	gap := gapWidth * k
+	right := size.Width - gap
+	open := s.panelOpen()
+	show(s.panel.content, open)
+	show(s.findings.content, open)
+	show(s.edge, !open)
+	if open {
+		w := panelWidth * k
+		top := (size.Height - 3*gap) * panelShare
+		put(s.panel.content, right-w, gap, w, top)
+		put(s.findings.content, right-w, 2*gap+top, w, size.Height-3*gap-top)
+		right -= w + gap
+	} else {
+		put(s.edge, right-edgeWidth*k, gap, edgeWidth*k, size.Height-2*gap)
+		right -= edgeWidth*k + gap
+	}
+	bar := s.bar.content.MinSize().Height
+	put(s.bar.content, gap, gap/2, right-gap, bar)
+	top := bar + gap
+	height := max(0, size.Height-top-gap)
+	for i := range s.cards {
+		show(s.cards[i].content, !s.wide || i == s.active)
+	}
+	if s.wide {
+		put(s.cards[s.active].content, gap, top, right-gap, height)
+		return
+	}
+	half := (right - 2*gap) / 2
+	put(s.cards[0].content, gap, top, half, height)
+	put(s.cards[1].content, 2*gap+half, top, half, height)
+}
+
+func put(o fyne.CanvasObject, x, y, w, h float32) {
+	o.Move(fyne.NewPos(x, y))
+	o.Resize(fyne.NewSize(max(0, w), max(0, h)))
+}
+
+func show(o fyne.CanvasObject, on bool) {
+	if o.Visible() == on {
+		return
+	}
+	if on {
+		o.Show()
+	} else {
+		o.Hide()
+	}
+}
+
+// arrange lays the page out again.
+func (s *Station) arrange() {
+	if s.content != nil {
+		s.content.Refresh()
+	}
+}
+
+// narrow tells whether the window has too little width for the panel.
+func (s *Station) narrow() bool {
+	w := s.ctx.Window()
+	return w != nil && w.Canvas() != nil && w.Canvas().Size().Width < narrowBelow*widgets.Scale()
+}
+
+func (s *Station) panelOpen() bool {
+	switch s.fold {
+	case foldOpen:
+		return true
+	case foldClosed:
+		return false
+	}
+	return !s.narrow()
+}
+
+// togglePanel opens or folds the panel. A choice that is what the width of the
+// window asks for anyway is forgotten.
+func (s *Station) togglePanel() {
+	open := !s.panelOpen()
+	switch {
+	case open != s.narrow():
+		s.fold = foldAuto
+	case open:
+		s.fold = foldOpen
+	default:
+		s.fold = foldClosed
+	}
+	s.arrange()
+	s.bar.reload()
+}
+
+// newEdge makes the edge that the panel folds to: it tells what is selected and how
+// many findings need mending, and opens the panel.
+func newEdge(s *Station) *widgets.Figure {
+	f := widgets.NewFigure(fyne.NewSize(edgeWidth, 100), func(p pen.Pen, w, h float64) []widgets.Part {
+		pal := s.ctx.Palette()
+		pen.RoundRect(p, 0.5, 0.5, w-1, h-1, 6, pal.Card, pen.Stroke{W: 1, C: pal.Edge})
+		text, bad := s.edgeText()
+		colour := pal.Ink
+		if bad {
+			pen.Rect(p, w/2-4, 10, 8, 8, pal.Danger, pen.Stroke{})
+		}
+		p.RotatedText(pen.Pt{X: w/2 - 4, Y: 28}, text, 11.5, 90, colour, pen.Left, false)
+		return []widgets.Part{{Name: "open", Text: text, W: w, H: h, Click: true}}
+	})
+	f.Tapped = func(widgets.Part, float64, float64) { s.togglePanel() }
+	return widgets.Name(f, "sheet.edge")
+}
+
+func (s *Station) edgeText() (text string, bad bool) {
+	text = "Properties"
+	if _, block := s.ctx.Selected(); block != "" {
+		text = "Properties of " + block
+	}
+	n := len(s.findings.list)
+	for _, f := range s.findings.list {
+		bad = bad || f.Level == circuit.Stops || f.Level == circuit.Warns
+	}
+	return text + fmt.Sprintf(" · findings: %d", n), bad
+}
+
+// card is the paper that a sheet lies on, with the name of its circuit.
+type card struct {
+	s       *Station
+	index   int
+	paper   *canvas.Rectangle
+	head    *widgets.Figure
+	picker  *picker
+	content *fyne.Container
+	name    string
+	note    string
+}
+
+func newCard(s *Station, index int) *card {
+	c := &card{s: s, index: index, paper: canvas.NewRectangle(nil)}
+	c.head = widgets.NewFigure(fyne.NewSize(120, 26), c.drawHead)
+	c.head.Tapped = func(widgets.Part, float64, float64) {
+		if e := s.editors[index]; e.circuit >= 0 {
+			s.active = index
+			e.choose("", false)
+		}
+	}
+	widgets.Name(c.head, fmt.Sprintf("sheet.head.%d", index))
+	var right fyne.CanvasObject
+	if index == 1 {
+		c.picker = newPicker(s)
+		right = c.picker.sel
+	}
+	head := container.NewBorder(nil, nil, nil, right, c.head)
+	inner := container.NewBorder(head, nil, nil, nil, s.editors[index])
+	c.content = container.NewStack(c.paper, container.New(inset{6}, inner))
+	return c
+}
+
+// inset leaves room round its objects.
+type inset struct{ by float32 }
+
+func (l inset) Layout(objects []fyne.CanvasObject, size fyne.Size) {
+	by := l.by * widgets.Scale()
+	for _, o := range objects {
+		put(o, by, by, size.Width-2*by, size.Height-2*by)
+	}
+}
+
+func (l inset) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	m := fyne.Size{}
+	for _, o := range objects {
+		m = m.Max(o.MinSize())
+	}
+	by := 2 * l.by * widgets.Scale()
+	return m.AddWidthHeight(by, by)
+}
+
+func (c *card) drawHead(p pen.Pen, w, h float64) []widgets.Part {
+	pal := c.s.ctx.Palette()
+	const gap = 8.0
+	name := pen.Shorten(c.name, 14, true, w-2*gap)
+	p.Text(pen.Pt{X: gap, Y: 18}, name, 14, pal.Ink, pen.Left, true)
+	x := 2*gap + p.TextWidth(name, 14, true)
+	if x+40 < w {
+		p.Text(pen.Pt{X: x, Y: 18}, pen.Shorten(c.note, 11, false, w-x), 11, pal.Secondary, pen.Left, false)
+	}
+	return []widgets.Part{{Name: "name", Text: c.name, W: w, H: h, Click: c.name != ""}}
+}
+
+// reload takes name and note of the circuit.
+func (c *card) reload() {
+	name, note := "As found", ""
+	if c.index == 1 {
+		name = "Proposal"
+	}
+	if e := c.s.editors[c.index]; e.drawn != nil {
+		name, note = e.drawn.Name, e.drawn.Note
+	}
+	if name != c.name || note != c.note {
+		c.name, c.note = name, note
+		c.head.Refresh()
+	}
+	if c.picker != nil {
+		c.picker.reload()
+	}
+}
+
+func (c *card) recolour() {
+	pal := c.s.ctx.Palette()
+	paper(c.paper, pal)
+	c.head.Refresh()
+}
+
+// paper makes a rectangle a card.
+func paper(r *canvas.Rectangle, pal figures.Palette) {
+	r.FillColor, r.StrokeColor, r.StrokeWidth, r.CornerRadius = pal.Card, pal.Edge, 1, 6
+	r.Refresh()
+}

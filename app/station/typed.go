@@ -1,0 +1,32 @@
+package station
+
+import (
+	"strings"
+
+	"barlitre/machines/units"
+)
+
+// Typed brings what was typed into a field into the form of an audit file: decimal comma or
+// point, any unit of the quantity; a bare number is in unit in.
+func Typed(text string, d units.Dim, in units.Unit) (string, error) {
+	si, u, err := units.ParseLoose(text, d, in)
+	if err != nil {
+		return "", err
+	}
+	return units.FileText(si, u), nil
+}
+
+// Shown writes a value of the file for a field: with all its digits in the unit it was
+// typed in where that is the user's unit or money, else in the user's unit.
+func Shown(ctx Context, si float64, typed units.Unit, d units.Dim) string {
+	u := units.Preferred(d, ctx.System())
+	money := d == units.Money || d == units.EnergyPrice
+	if typed.Factor == 0 || (typed.Symbol != u.Symbol && !money) {
+		return ctx.Text(si, d, 5)
+	}
+	text := strings.TrimSpace(strings.TrimSuffix(units.FileText(si, typed), typed.Symbol))
+	if label := typed.Label(); label != "" {
+		text += "\u202f" + label
+	}
+	return ctx.Local(text)
+}

@@ -1,0 +1,339 @@
+package widgets
+
+import (
+	"image"
+	"image/color"
+	"math"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/canvas"
+	"fyne.io/fyne/v2/driver/desktop"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/audit/figures"
+	"barlitre/audit/pen"
+)
+
+// ClockPlot is a plot over time with the clock on it: a line that a click or a drag
+// moves, and the values at it. Only the line is redrawn when the clock moves.
+type ClockPlot struct {
+	widget.BaseWidget
+	Palette func() figures.Palette
+	Moved   func(t float64)                  // the user moved the clock
+	Value   func(lane int, t float64) string // what stands beside the line; nil = nothing
+	Format  func(t float64) string           // the clock in words, above the line; nil = none
+	plot    figures.Plot
+	area    figures.PlotArea // at scale 1
+	clock   float64
+	min     fyne.Size
+	raster  *canvas.Raster
+	ring    *canvas.Rectangle
+	line    *canvas.Rectangle
+	mark    *canvas.Raster
+	flags   []*flag
+	drawn   *pen.Raster
+	held    bool
+	focused bool
+}
+
+// flag is a value beside the clock line: its ground, so that lines of the plot do
+// not strike it through, and its text.
+type flag struct {
+	ground *canvas.Rectangle
+	text   *canvas.Text
+}
+
+// NewClockPlot makes an empty plot with a least size.
+func NewClockPlot(min fyne.Size, palette func() figures.Palette) *ClockPlot {
+	c := &ClockPlot{Palette: palette, min: min, line: canvas.NewRectangle(color.Black), ring: canvas.NewRectangle(color.Transparent)}
+	c.raster = canvas.NewRaster(c.paint)
+	c.raster.ScaleMode = canvas.ImageScalePixels
+	c.mark = canvas.NewRaster(c.paintMark)
+	c.ring.Hide()
+	c.ExtendBaseWidget(c)
+	return c
+}
+
+// Show brings in a plot.
+func (c *ClockPlot) SetPlot(p figures.Plot) {
+	c.plot = p
+	c.flags = nil
+	for range p.Lanes {
+		c.flags = append(c.flags, newFlag())
+	}
+	c.flags = append(c.flags, newFlag()) // of the clock
+	c.Refresh()
+}
+
+func newFlag() *flag {
+	return &flag{canvas.NewRectangle(color.Transparent), canvas.NewText("", color.Black)}
+}
+
+// SetClock moves the clock.
+func (c *ClockPlot) SetClock(t float64) {
+	if t != c.clock {
+		c.clock = t
+		c.arrange()
+	}
+}
+
+// Height is the height at which the plot looks well at a width, in units of the widget.
+func (c *ClockPlot) Height(width float32) float32 {
+	k := Scale()
+	return float32(c.plot.Height(float64(width/k))) * k
+}
+
+// SetMin changes the least size, at scale 1.
+func (c *ClockPlot) SetMin(min fyne.Size) {
+	if c.min != min {
+		c.min = min
+		c.BaseWidget.Refresh()
+	}
+}
+
+// view is the size at scale 1.
+func (c *ClockPlot) view() (w, h float64) {
+	k := float64(Scale())
+	return float64(c.Size().Width) / k, float64(c.Size().Height) / k
+}
+
+// blind measures a figure without drawing it.
+type blind struct{ pen.Pen }
+
+func (blind) Polyline([]pen.Pt, bool, color.NRGBA, pen.Stroke)           {}
+func (blind) Circle(pen.Pt, float64, color.NRGBA, pen.Stroke)            {}
+func (blind) Text(pen.Pt, string, float64, color.NRGBA, pen.Align, bool) {}
+func (blind) TextWidth(s string, size float64, bold bool) float64 {
+	return pen.TextWidth(s, size, bold)
+}
+func (blind) Push(_, _, _ float64)        {}
+func (blind) Pop()                        {}
+func (blind) ClipRect(_, _, _, _ float64) {}
+func (blind) Unclip()                     {}
+
+// lay finds where the lanes lie.
+func (c *ClockPlot) lay() {
+	w, h := c.view()
+	c.area = c.plot.Draw(blind{}, w, h, c.Palette())
+}
+
+func (c *ClockPlot) paint(w, h int) image.Image {
+	if c.drawn == nil || c.drawn.Image().Rect.Dx() != w || c.drawn.Image().Rect.Dy() != h {
+		c.drawn = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
+	}
+	c.drawn.Reset(c.drawn.Image())
+	p := c.Palette()
+	c.drawn.Clear(p.Card)
+	if vw, vh := c.view(); vw > 0 && vh > 0 {
+		c.drawn.Push(0, 0, float64(w)/vw)
+		c.plot.Draw(c.drawn, vw, vh, p)
+		c.drawn.Pop()
+	}
+	return c.drawn.Image()
+}
+
+// paintMark draws the head of the clock line: a sign beside its colour.
+func (c *ClockPlot) paintMark(w, h int) image.Image {
+	img := pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
+	x, y := float64(w), float64(h)
+	img.Polyline([]pen.Pt{{X: 0, Y: 0}, {X: x, Y: 0}, {X: x / 2, Y: y}}, true, c.Palette().Danger, pen.Stroke{})
+	return img.Image()
+}
+
+// arrange puts the line and its values where the clock is.
+func (c *ClockPlot) arrange() {
+	p := c.Palette()
+	k := Scale()
+	c.ring.StrokeColor, c.ring.StrokeWidth, c.ring.FillColor = p.Gain, 1.5, color.Transparent
+	c.ring.Resize(c.Size())
+	show(c.ring, c.focused)
+	a := c.area
+	on := len(a.Lanes) > 0 && c.clock >= a.From && c.clock <= a.To
+	show(c.line, on)
+	show(c.mark, on)
+	if !on {
+		for _, f := range c.flags {
+			f.hide()
+		}
+		return
+	}
+	x := float32(a.XAt(c.clock)) * k
+	top, last := float32(a.Lanes[0].Y)*k, a.Lanes[len(a.Lanes)-1]
+	bottom := float32(last.Y+last.H) * k
+	c.line.FillColor = p.Danger
+	c.line.Move(fyne.NewPos(x-0.75, top-4*k))
+	c.line.Resize(fyne.NewSize(1.5, bottom-top+8*k))
+	c.mark.Move(fyne.NewPos(x-4*k, top-9*k))
+	c.mark.Resize(fyne.NewSize(8*k, 6*k))
+	right := float32(a.X+a.W) * k
+	for i := range a.Lanes {
+		text := ""
+		if c.Value != nil {
+			text = c.Value(i, c.clock)
+		}
+		c.flags[i].place(text, p, x, right, float32(a.Lanes[i].Y+2)*k)
+	}
+	text := ""
+	if c.Format != nil {
+		text = c.Format(c.clock)
+	}
+	f := c.flags[len(c.flags)-1]
+	f.place(text, p, x, right, bottom+9*k)
+	f.text.Color = p.Danger
+	canvas.Refresh(c)
+}
+
+func show(o fyne.CanvasObject, on bool) {
+	if on != o.Visible() {
+		if on {
+			o.Show()
+		} else {
+			o.Hide()
+		}
+	}
+}
+
+func (f *flag) hide() {
+	show(f.text, false)
+	show(f.ground, false)
+}
+
+// place writes a value right of the line, or left where there is no room.
+func (f *flag) place(text string, p figures.Palette, x, right, y float32) {
+	if text == "" {
+		f.hide()
+		return
+	}
+	k := Scale()
+	f.text.Text, f.text.Color, f.text.TextSize, f.text.TextStyle = text, p.Ink, tableSmall*k, fyne.TextStyle{Bold: true}
+	f.ground.FillColor = faint(p.Card, 225)
+	size := f.text.MinSize()
+	at := x + 5*k
+	if at+size.Width > right {
+		at = x - 5*k - size.Width
+	}
+	f.text.Move(fyne.NewPos(at, y))
+	f.text.Resize(size)
+	f.ground.Move(fyne.NewPos(at-2*k, y))
+	f.ground.Resize(fyne.NewSize(size.Width+4*k, size.Height))
+	show(f.text, true)
+	show(f.ground, true)
+}
+
+// MouseDown moves the clock.
+func (c *ClockPlot) MouseDown(ev *desktop.MouseEvent) {
+	if ev.Button != desktop.MouseButtonPrimary {
+		return
+	}
+	if cv := fyne.CurrentApp().Driver().CanvasForObject(c); cv != nil {
+		cv.Focus(c)
+	}
+	c.held = true
+	c.to(ev.Position)
+}
+
+// MouseUp lets the clock go.
+func (c *ClockPlot) MouseUp(*desktop.MouseEvent) { c.held = false }
+
+// Dragged moves the clock on.
+func (c *ClockPlot) Dragged(ev *fyne.DragEvent) {
+	if c.held {
+		c.to(ev.Position)
+	}
+}
+
+// DragEnd lets the clock go.
+func (c *ClockPlot) DragEnd() { c.held = false }
+
+func (c *ClockPlot) to(at fyne.Position) {
+	if c.Moved != nil && len(c.area.Lanes) > 0 {
+		c.Moved(c.area.At(float64(at.X / Scale())))
+	}
+}
+
+// Cursor tells that the clock can be moved sideways.
+func (c *ClockPlot) Cursor() desktop.Cursor { return desktop.HResizeCursor }
+
+// FocusGained and FocusLost show where the keys go.
+func (c *ClockPlot) FocusGained() { c.focused = true; c.arrange() }
+
+// FocusLost is the end of it.
+func (c *ClockPlot) FocusLost() { c.focused = false; c.arrange() }
+
+// TypedRune is for text; a plot takes none.
+func (c *ClockPlot) TypedRune(rune) {}
+
+// TypedKey moves the clock: arrows by 1/200 of what is shown, page keys by a twentieth.
+func (c *ClockPlot) TypedKey(k *fyne.KeyEvent) {
+	if c.Moved == nil || len(c.area.Lanes) == 0 {
+		return
+	}
+	span := c.area.To - c.area.From
+	to := map[fyne.KeyName]float64{fyne.KeyLeft: c.clock - span/200, fyne.KeyRight: c.clock + span/200,
+		fyne.KeyPageUp: c.clock - span/20, fyne.KeyPageDown: c.clock + span/20, fyne.KeyHome: c.area.From, fyne.KeyEnd: c.area.To}
+	if t, ok := to[k.Name]; ok {
+		c.Moved(math.Max(c.area.From, math.Min(c.area.To, t)))
+	}
+}
+
+// Parts are the lanes, each with its value at the clock, for scripts.
+func (c *ClockPlot) Parts() []Part {
+	var out []Part
+	k := float64(Scale())
+	for i, l := range c.area.Lanes {
+		text := ""
+		if c.Value != nil {
+			text = c.Value(i, c.clock)
+		}
+		out = append(out, Part{Name: c.plot.Lanes[i].Title, Text: text, X: c.area.X * k, Y: l.Y * k, W: c.area.W * k, H: l.H * k, Click: true})
+	}
+	return out
+}
+
+// DumpText is the clock, for scripts.
+func (c *ClockPlot) DumpText() string {
+	if c.Format == nil {
+		return ""
+	}
+	return c.Format(c.clock)
+}
+
+// MinSize is the least size.
+func (c *ClockPlot) MinSize() fyne.Size {
+	return fyne.NewSize(c.min.Width*Scale(), c.min.Height*Scale())
+}
+
+// Resize lays the plot out anew.
+func (c *ClockPlot) Resize(s fyne.Size) {
+	if s != c.Size() {
+		c.BaseWidget.Resize(s)
+		c.lay()
+		c.arrange()
+	}
+}
+
+// Refresh draws anew.
+func (c *ClockPlot) Refresh() {
+	c.lay()
+	c.arrange()
+	c.raster.Refresh()
+	c.mark.Refresh()
+	c.BaseWidget.Refresh()
+}
+
+// CreateRenderer is for the toolkit.
+func (c *ClockPlot) CreateRenderer() fyne.WidgetRenderer { return &clockRenderer{c} }
+
+type clockRenderer struct{ c *ClockPlot }
+
+func (r *clockRenderer) Layout(size fyne.Size) { r.c.raster.Resize(size); r.c.arrange() }
+func (r *clockRenderer) MinSize() fyne.Size    { return r.c.MinSize() }
+func (r *clockRenderer) Refresh()              {}
+func (r *clockRenderer) Destroy()              {}
+func (r *clockRenderer) Objects() []fyne.CanvasObject {
+	out := []fyne.CanvasObject{r.c.raster, r.c.line, r.c.mark}
+	for _, f := range r.c.flags {
+		out = append(out, f.ground, f.text)
+	}
+	return append(out, r.c.ring)
+}
