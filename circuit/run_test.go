@@ -291,6 +291,9 @@ C1 cylinder; axis: ram; hold: valve; bore: 80 mm; rod: 56 mm
 // moves it both ways, without throttling beyond the open edges; so does a motor of
 // variable speed.
 func TestDirectingValve(t *testing.T) {
+	resisted := points("resisted", 0.01, []float64{0, 0.2, 1, 1.2, 1.5, 1.7, 2.5, 2.7, 3},
+		duty.Track{Of: "ram", What: duty.Speed, Values: []float64{0, .1, .1, 0, 0, -.1, -.1, 0, 0}},
+		duty.Track{Of: "ram", What: duty.Load, Values: []float64{20e3, 20e3, 40e3, 40e3, -8e3, -8e3, -4e3, -4e3, -4e3}})
 	for name, drive := range map[string]string{
 		"variable pump": `
 M1 electric_motor; rated_power: 22 kW; efficiency: 0.93
@@ -313,7 +316,7 @@ CV1 check
 - V1.B C1.B
 - V1.T TK.T
 - CV1.in TK.T
-`, ramAxis, ramDuty)
+`, ramAxis, resisted)
 		for i, a := range r.axes {
 			if d := math.Abs(a[0].Speed - a[0].Demand); d > 1e-6 && !a[0].Standing {
 				t.Fatalf("%s: at %g s the speed is %g, asked %g", name, r.t[i], a[0].Speed, a[0].Demand)
