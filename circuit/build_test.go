@@ -249,11 +249,6 @@ func TestTrialCircuits(t *testing.T) {
 	drum := points("drum", 0.01, []float64{0, 1, 8, 9, 12, 13, 20, 21, 24},
 		duty.Track{Of: "drum", What: duty.Speed, Values: []float64{0, 60, 60, 0, 0, -60, -60, 0, 0}},
 		duty.Track{Of: "drum", What: duty.Load, Values: []float64{180, 180, 180, 180, 180, 180, 180, 180, 180}})
-	both := points("both", 0.01, []float64{0, 0.1, 1, 1.5, 2.0, 2.1, 5.0, 5.1, 6, 6.5, 7.0, 7.1, 9.0, 9.1, 12},
-		duty.Track{Of: "ram", What: duty.Speed, Values: []float64{0, .15, .15, .15, .15, .03, .03, 0, 0, 0, 0, -.2, -.2, 0, 0}},
-		duty.Track{Of: "ram", What: duty.Load, Values: []float64{5e3, 5e3, 5e3, 5e3, 5e3, 20e3, 60e3, 60e3, 60e3, 60e3, 60e3, 5e3, 5e3, 5e3, 5e3}},
-		duty.Track{Of: "turn", What: duty.Speed, Values: []float64{0, 0, 0, 25, 25, 25, 25, 25, 25, 0, 0, 0, 0, 0, 0}},
-		duty.Track{Of: "turn", What: duty.Load, Values: []float64{120, 120, 120, 120, 120, 120, 120, 120, 120, 120, 120, 120, 120, 120, 120}})
 	for _, c := range []struct {
 		name, text  string
 		axes        []duty.Axis
@@ -263,7 +258,7 @@ func TestTrialCircuits(t *testing.T) {
 	}{
 		{"C1", c1, ramAxis, ramDuty, 251.53288, 0, 17.13759, 8.76476},
 		{"C2", c2, ramAxis, ramDuty, 79.00013, 0, 8.42644, 8.25059},
-		{"C3", c3, []duty.Axis{ramAxis[0], {Name: "turn", Kind: duty.Rotary}}, both, 76.84041, 0, 9.45911, 3.43600},
+		{"C3", c3, trialAxes, bothDuty, 76.84041, 0, 9.45911, 3.43600},
 		{"C4", c4, []duty.Axis{{Name: "drum", Kind: duty.Rotary}}, drum, 179.20274, 38.64853, 19.42703, 20.40526},
 		{"C5", c5, ramAxis, ramDuty, 11.85354, 0.13603, 4.40348, 1.28521},
 	} {

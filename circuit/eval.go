@@ -257,3 +257,10 @@ func (k *booking) lose(i int, w float64) {
 		k.pow[i] += w
 	}
 }
+
+// through books a flow from a to b: both port flows and the loss Δp·q.
+func (k *booking) through(a, b slot, q float64, qa, qb, loss int) {
+	k.put(qa, k.m3s(q))
+	k.put(qb, -k.m3s(q))
+	k.lose(loss, k.watts((k.val(a)-k.val(b))*q))
+}

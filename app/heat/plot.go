@@ -83,6 +83,9 @@ func (p *plot) stackOf(s *audit.Solution, i int, d *duty.Duty) figures.Stack {
 }
 
 func phases(d *duty.Duty) []figures.Phase {
+	if len(d.Time) == 0 {
+		return nil
+	}
 	var out []figures.Phase
 	for i, p := range d.Phases {
 		to := d.Time[len(d.Time)-1]
@@ -98,11 +101,10 @@ func (p *plot) draw(to pen.Pen, w, h float64) []widgets.Part {
 	if len(p.stack.Lanes) == 0 {
 		to.Text(pen.Pt{X: w / 2, Y: h / 2}, "The course of the heat stands here once a circuit is solved", 12.5, p.ctx.Palette().Secondary, pen.Center, false)
 		p.area = figures.PlotArea{}
-		p.clock()
 		return nil
 	}
 	p.area = p.stack.Draw(to, w, h, p.ctx.Palette())
-	p.clock()
+	p.place(p.ctx.Clock())
 	var parts []widgets.Part
 	for i, l := range p.area.Lanes {
 		parts = append(parts, widgets.Part{Name: p.stack.Lanes[i].Title, Text: "mean " + p.stack.Lanes[i].MeanNote,

@@ -38,7 +38,11 @@ func newTemperature(ctx station.Context, title, target, name string) *temperatur
 // put returns what takes a typed value.
 func (t *temperature) put(what string) func(string) error {
 	return func(text string) error {
-		quantity, err := station.Typed(text, units.Temperature, units.Preferred(units.Temperature, t.ctx.System()))
+		var keep units.Unit
+		if v, there := t.of(t.ctx.Doc().File()); there && !(math.IsNaN(v.Low) && math.IsNaN(v.High)) {
+			keep = v.Unit
+		}
+		quantity, err := station.Typed(text, units.Temperature, units.Preferred(units.Temperature, t.ctx.System()), keep)
 		if err != nil {
 			return err
 		}

@@ -7,11 +7,15 @@ import (
 )
 
 // Typed brings what was typed into a field into the form of an audit file: decimal comma or
-// point, any unit of the quantity; a bare number is in unit in.
-func Typed(text string, d units.Dim, in units.Unit) (string, error) {
+// point, any unit of the quantity; a bare number is in unit in. Where keep is a unit, the
+// value is written in it: a low and a high without units of their own go by that unit.
+func Typed(text string, d units.Dim, in, keep units.Unit) (string, error) {
 	si, u, err := units.ParseLoose(text, d, in)
 	if err != nil {
 		return "", err
+	}
+	if keep.Factor != 0 {
+		u = keep
 	}
 	return units.FileText(si, u), nil
 }

@@ -1,0 +1,161 @@
+// Package stationtest is a station.Context for tests of stations: a real document, and
+// a window of the toolkit's test driver.
+package stationtest
+
+import (
+	"image/png"
+	"os"
+	"path/filepath"
+	"strings"
+	"testing"
+	"time"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/test"
+
+	"barlitre/app/document"
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/audit/figures"
+	"barlitre/machines/units"
+)
+
+// Context remembers what a station said and did.
+type Context struct {
+	T         *testing.T
+	Document  *document.Document
+	Win       fyne.Window
+	Units     units.System
+	Comma     bool
+	Dark      bool
+	Time      float64
+	At        int // index of the duty
+	Explained []audit.Figure
+	Said      []string
+	Failed    []error
+	Went      []string
+}
+
+// New opens a sample, "" for the empty audit, and waits until it is solved.
+func New(t *testing.T, sample string) *Context {
+	t.Helper()
+	app := test.NewTempApp(t)
+	c := &Context{T: t, Document: document.New(document.Options{})}
+	t.Cleanup(func() { c.Document.Abandon() })
+	app.Settings().SetTheme(widgets.Theme{})
+	c.Win = test.NewTempWindow(t, nil)
+	c.Win.SetPadded(false)
+	if sample != "" {
+		if err := c.Document.OpenSample(sample); err != nil {
+			t.Fatal(err)
+		}
+		c.Wait()
+	}
+	return c
+}
+
+// Wait waits until the present revision is solved.
+func (c *Context) Wait() {
+	c.T.Helper()
+	for end := time.Now().Add(30 * time.Second); !c.Document.Current(); time.Sleep(2 * time.Millisecond) {
+		if err := c.Document.Failure(); err != nil {
+			c.T.Fatal(err)
+		}
+		if time.Now().After(end) {
+			c.T.Fatal("not solved in 30 s")
+		}
+	}
+}
+
+// Show puts a station into the window and tells it everything.
+func (c *Context) Show(s station.Station, w, h float32) {
+	c.Win.SetContent(s.Content())
+	c.Win.Resize(fyne.NewSize(w, h))
+	s.Changed(station.Everything)
+	c.Settle(w, h)
+}
+
+// Settle lays out until the sizes of wrapped texts hold, as the window's frames do.
+func (c *Context) Settle(w, h float32) {
+	for i := range 4 {
+		c.Win.Resize(fyne.NewSize(w, h-1+float32(i%2)))
+		refresh(c.Win.Content())
+	}
+	c.Win.Resize(fyne.NewSize(w, h))
+	c.Win.Canvas().Capture()
+}
+
+func refresh(o fyne.CanvasObject) {
+	for _, o := range test.LaidOutObjects(o) {
+		if box, ok := o.(*fyne.Container); ok && box.Layout != nil {
+			box.Layout.Layout(box.Objects, box.Size())
+		}
+	}
+}
+
+// Look writes a picture of the window into the folder that the environment variable
+// BARLITRE_LOOK names; nothing without it.
+func (c *Context) Look(name string) {
+	dir := os.Getenv("BARLITRE_LOOK")
+	if dir == "" {
+		return
+	}
+	file, err := os.Create(filepath.Join(dir, name+".png"))
+	if err != nil {
+		c.T.Fatal(err)
+	}
+	defer file.Close()
+	if err := png.Encode(file, c.Win.Canvas().Capture()); err != nil {
+		c.T.Error(err)
+	}
+}
+
+// SetDark changes the theme.
+func (c *Context) SetDark(dark bool) {
+	c.Dark = dark
+	fyne.CurrentApp().Settings().SetTheme(widgets.Theme{Dark: dark})
+}
+
+// Doc and the others implement station.Context.
+func (c *Context) Doc() *document.Document  { return c.Document }
+func (c *Context) Window() fyne.Window      { return c.Win }
+func (c *Context) Clock() float64           { return c.Time }
+func (c *Context) SetClock(t float64)       { c.Time = t }
+func (c *Context) Duty() int                { return c.At }
+func (c *Context) SetDuty(i int)            { c.At = i }
+func (c *Context) Selected() (int, string)  { return -1, "" }
+func (c *Context) Select(int, string)       {}
+func (c *Context) System() units.System     { return c.Units }
+func (c *Context) Go(name string)           { c.Went = append(c.Went, name) }
+func (c *Context) Explain(f audit.Figure)   { c.Explained = append(c.Explained, f) }
+func (c *Context) Say(text string)          { c.Said = append(c.Said, text) }
+func (c *Context) Fail(err error)           { c.Failed = append(c.Failed, err) }
+func (c *Context) Palette() figures.Palette { return widgets.Theme{Dark: c.Dark}.Palette() }
+
+// Solution is that of the document.
+func (c *Context) Solution() *audit.Solution {
+	s, _ := c.Document.Solution()
+	return s
+}
+
+// Report lays it out.
+func (c *Context) Report() *audit.Report {
+	if s := c.Solution(); s != nil {
+		return s.Report(c.Units)
+	}
+	return nil
+}
+
+// Text writes a quantity in the user's unit.
+func (c *Context) Text(si float64, d units.Dim, digits int) string {
+	return c.Local(units.Format(si, units.Preferred(d, c.Units), digits))
+}
+
+// Local puts the decimal sign in.
+func (c *Context) Local(text string) string {
+	if c.Comma {
+		return strings.ReplaceAll(text, ".", ",")
+	}
+	return text
+}

@@ -1,0 +1,53 @@
+package circuit
+
+// gate is a valve that passes oil freely from V to C and, as far as it is lifted
+// by s (0..1), from C to V.
+type gate struct {
+	V, C, q1, q2, s slot // q1 >= 0 free flow, q2 >= 0 controlled flow C to V
+	po, qN, dN      int
+	qN2, dN2        int // of the controlled way, −1 as the free one
+	qV, qC, loss    int
+	opens           float64
+	free, back      throat
+	closed          float64 // linear resistance of the controlled way as s falls
+}
+
+func newGate(k *compiler, b *Block, V, C string, po, qN, dN, qV, qC, loss int) gate {
+	return gate{V: k.node(b, V), C: k.node(b, C), q1: k.unknown(otherRow, b.ID), q2: k.unknown(otherRow, b.ID), s: k.unknown(otherRow, b.ID+" opening"),
+		po: po, qN: qN, dN: dN, qN2: -1, dN2: -1, qV: qV, qC: qC, loss: loss}
+}
+
+func (m *gate) bindGate(b *binding) {
+	m.opens = b.p[m.po] / b.scales.p
+	m.free = throatOf(b.p[m.qN]/b.scales.q, b.p[m.dN]/b.scales.p)
+	m.back = m.free
+	if m.qN2 >= 0 {
+		m.back = throatOf(b.p[m.qN2]/b.scales.q, b.p[m.dN2]/b.scales.p)
+	}
+	m.closed = (100e5 / b.scales.p) / (b.p[m.qN] / b.scales.q)
+	b.bound.Lo[m.q1], b.bound.Lo[m.q2] = 0, 0
+	b.bound.Lo[m.s], b.bound.Hi[m.s] = 0, 1
+}
+
+// evalGate adds both ways; lift adds the row of s.
+func (m *gate) evalGate(e *eval) {
+	q1 := e.branch(m.V, m.C, m.q1)
+	r, dr := m.free.at(q1)
+	e.drop(m.V, m.C, m.q1, m.opens+r, dr)
+	q2, s := e.branch(m.C, m.V, m.q2), e.val(m.s)
+	r, dr = m.back.at(q2)
+	dp := e.val(m.C) - e.val(m.V)
+	e.add(m.q2, r+(1-s)*m.closed*q2+minResistance*q2-s*dp)
+	e.d(m.q2, m.q2, dr+(1-s)*m.closed+minResistance)
+	e.d(m.q2, m.s, -m.closed*q2-dp)
+	e.d(m.q2, m.C, -s)
+	e.d(m.q2, m.V, s)
+}
+
+func (m *gate) bookGate(k *booking) {
+	k.through(m.V, m.C, k.val(m.q1)-k.val(m.q2), m.qV, m.qC, m.loss)
+}
+
+func (m *gate) cold(s *step, level int, x []float64) {
+	x[m.q1], x[m.q2], x[m.s] = 0.05, 0.05, 0.5
+}
