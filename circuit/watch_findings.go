@@ -1,0 +1,158 @@
+package circuit
+
+import (
+	"fmt"
+	"math"
+
+	"barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+func show(x float64, d units.Dim) string {
+	return units.Format(x, units.Preferred(d, units.Metric), 3)
+}
+
+func clock(t float64) string { return units.Number(t, 4) + " s" }
+
+// Findings says which limits were passed and what stands out.
+func (w *Watch) Findings() []Finding {
+	f := &findings{circuit: w.c.circuit, duty: w.series.Duty.Name}
+	w.ratings(f)
+	w.speeds(f)
+	w.torques(f)
+	w.motions(f)
+	w.reliefs(f)
+	for i, v := range w.voids {
+		if v.worst > 0.01*units.LitrePerMinute {
+			f.add(Warns, nil, "", v.t, "%s runs empty: %s are missing at %s. Feed it through a make-up check valve, or hold the load back with a counterbalance valve", w.c.nodes[i].name, show(v.worst, units.Flow), clock(v.t))
+		}
+	}
+	if w.starts > 0 && w.span > 0 && w.onLine() {
+		if perHour := float64(w.starts) * 3600 / w.span; perHour > 10 {
+			f.add(Warns, nil, "pump_at_rest", 0, "the motors are started %s times an hour; a direct-on-line motor usually stands 6 to 15 (common practice, ask its maker), use a converter or unload instead", units.Number(perHour, 3))
+		}
+	}
+	return f.list
+}
+
+// onLine reports whether a motor hangs on the mains without a converter.
+func (w *Watch) onLine() bool {
+	_, of := netsOf(w.c.circuit)
+	for _, m := range w.motors {
+		if n := of[PortRef{m.b.ID, "E"}]; n == nil || len(n.ports) < 2 {
+			return true
+		}
+	}
+	return false
+}
+
+type findings struct {
+	circuit *Circuit
+	duty    string
+	list    []Finding
+}
+
+func (f *findings) add(l Level, b *Block, param string, t float64, format string, args ...any) {
+	x := Finding{Level: l, Circuit: f.circuit.Name, Duty: f.duty, Parameter: param, Time: t, Text: fmt.Sprintf(format, args...)}
+	if b != nil {
+		x.Block, x.Line = b.ID, b.Line
+		x.Text = b.ID + ": " + x.Text
+	}
+	f.list = append(f.list, x)
+}
+
+// ratings compares each block's port pressures with its rating.
+func (w *Watch) ratings(f *findings) {
+	for _, b := range sorted(w.c.circuit.Blocks) {
+		k := KindNamed(b.Kind)
+		if k.Rating == "" {
+			continue
+		}
+		v, ok := b.Values[k.Rating]
+		if !ok {
+			continue
+		}
+		top, at, port := 0.0, 0.0, ""
+		for i, s := range w.c.signals {
+			if s.Block == b.ID && s.What == "p" && w.ext[i].max > top {
+				top, at, port = w.ext[i].max, w.ext[i].tMax, s.Port
+			}
+		}
+		if top > v.SI {
+			est := ""
+			if w.fastRamp(at) {
+				est = " (upper estimate of a fast ramp)"
+			}
+			f.add(Caution, b, k.Rating, at, "%s at port %s%s is above its rated %s; do not run it so", show(top, units.Pressure), port, est, show(v.SI, units.Pressure))
+		}
+	}
+	if p := w.PeakPressure(); p.Value > 1000*units.Bar {
+		f.add(Caution, nil, "", p.T, "%s at %s: nothing limits the pressure there, the figure only shows that a relief valve is missing", show(p.Value, units.Pressure), p.At)
+	}
+}
+
+func (w *Watch) speeds(f *findings) {
+	for _, m := range w.mach {
+		if m.fast > 0 {
+			f.add(Warns, m.b, "max_speed", m.tFast, "turns at %s, above its highest speed of %s", show(m.fast, units.AngularSpeed), show(m.max, units.AngularSpeed))
+		}
+		if m.slowTime > 0 {
+			f.add(Warns, m.b, "min_speed", m.tSlow, "turns at %s under pressure, below its lowest speed of %s, for %s a cycle; its bearings may run dry", show(m.slow, units.AngularSpeed), show(m.min, units.AngularSpeed), clock(m.slowTime))
+		}
+	}
+}
+
+func (w *Watch) torques(f *findings) {
+	for _, m := range w.motors {
+		if m.rated <= 0 || w.span <= 0 {
+			continue
+		}
+		rms := math.Sqrt(m.square / w.span)
+		if rms > m.rated*1.0001 {
+			f.add(Warns, m.b, "rated_power", 0, "its mean square torque of %s is above the rated %s; it will overheat, choose a larger motor", show(rms, units.Torque), show(m.rated, units.Torque))
+		}
+		switch r := m.peak / m.rated; {
+		case r > 2:
+			f.add(Warns, m.b, "rated_power", m.tPeak, "peak torque %s is %s times the rated one; most induction motors pull out near 2 to 3 times (common practice)", show(m.peak, units.Torque), units.Number(r, 2))
+		case r > 1.0001:
+			f.add(Note, m.b, "rated_power", m.tPeak, "peak torque %s is above the rated %s for a while; mean square torque %s", show(m.peak, units.Torque), show(m.rated, units.Torque), show(rms, units.Torque))
+		}
+	}
+}
+
+func (w *Watch) motions(f *findings) {
+	for i, a := range w.axes {
+		ax := w.c.axes[i]
+		b := w.c.circuit.Block(w.c.movers[i].block)
+		speed, way := units.Velocity, units.Length
+		if ax.Kind == duty.Rotary {
+			speed, way = units.AngularSpeed, units.Angle
+		}
+		if a.short > 0 {
+			f.add(Warns, b, "", a.at, "slower than the duty asks for %s a cycle, at worst %s of the speed at %s; %s of travel are lost", clock(a.short), units.Format(a.ratio, units.Percent, 3), clock(a.at), show(a.lost, way))
+		}
+		if a.over != 0 {
+			f.add(Caution, b, "", a.tOver, "it runs ahead of the duty, at %s it moves at %s, %s times what is asked: leakage or the load moves it and the control cannot hold it back", clock(a.tOver), show(math.Abs(a.over), speed), units.Number(a.overRatio, 3))
+		}
+		if a.backwards != 0 {
+			f.add(Caution, b, "", a.tBack, "the load drives it backwards at up to %s; fit a load check", show(math.Abs(a.backwards), speed))
+		}
+		if a.falls != 0 {
+			f.add(Caution, b, "hold", a.tFall, "it is not held: it moves at up to %s while it should stand", show(math.Abs(a.falls), speed))
+		}
+		if b == nil || b.Kind != kindCylinder {
+			continue
+		}
+		if v, ok := b.Values["stroke"]; ok && a.hi-a.lo > v.SI*(1+1e-6) {
+			f.add(Warns, b, "stroke", 0, "the duty moves it over %s, more than its stroke of %s", mm(a.hi-a.lo), mm(v.SI))
+		}
+	}
+}
+
+func (w *Watch) reliefs(f *findings) {
+	for _, r := range w.reds {
+		if share := r.open / math.Max(w.span, 1e-12); share > 0.02 {
+			f.add(Note, r.b, "", 0, "open for %s of the cycle, %s of it while an axis moves: what passes it is lost as heat. Never raise a relief setting to gain speed", units.Format(share, units.Percent, 2), units.Format(r.work/math.Max(r.open, 1e-12), units.Percent, 2))
+		}
+	}
+}
