@@ -52,12 +52,19 @@ func WallHeat(h, area, dT float64) float64 { return h * area * dT }
 // ordinary and forced air. Trade literature on tanks; rough by a factor of 1.5.
 var WallCoefficients = [3]float64{6, 12, 24}
 
+// leastHeat is the mean heat [W] below which it is what rounding leaves of nothing, as in
+// a circuit that is switched off.
+const leastHeat = 1e-6
+
 func heatOf(runs []*DutyRun, y *Year, oil, air float64) *Heat {
 	h := &Heat{Oil: oil, Air: air, Hottest: -1}
 	if _, err := CoolerRate(0, oil, air); err != nil {
 		h.Fault = err.Error()
 	}
 	row := func(name string, mean float64) HeatRow {
+		if math.Abs(mean) < leastHeat {
+			mean = 0
+		}
 		k, _ := CoolerRate(mean, oil, air)
 		return HeatRow{Duty: name, Mean: mean, Cooler: k}
 	}

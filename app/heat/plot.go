@@ -74,8 +74,8 @@ func (p *plot) stackOf(s *audit.Solution, i int, d *duty.Duty) figures.Stack {
 			continue
 		}
 		lane := figures.HeatLane(c, c.Duties[i], layers, p.unit, write)
-		if c.Duties[i].Plot.Thinned {
-			lane.Note = "long cycle: drawn from the lowest and highest value of each stretch"
+		if c.Duties[i].Plot.Thinned && len(out.Lanes) == 0 {
+			lane.Note = "long cycles: drawn from the lowest and highest value of each stretch"
 		}
 		out.Lanes = append(out.Lanes, lane)
 	}

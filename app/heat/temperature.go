@@ -5,6 +5,7 @@ import (
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/station"
 	"barlitre/app/widgets"
@@ -21,7 +22,7 @@ type temperature struct {
 	value   *widgets.Field
 	low     *widgets.Field
 	high    *widgets.Field
-	band    *fyne.Container
+	band    fyne.CanvasObject
 	content fyne.CanvasObject
 }
 
@@ -30,7 +31,10 @@ func newTemperature(ctx station.Context, title, target, name string) *temperatur
 	t.value = widgets.Name(widgets.NewField("", t.put("")), name)
 	t.low = widgets.Name(widgets.NewField("", t.put(".low")), name+".low")
 	t.high = widgets.Name(widgets.NewField("", t.put(".high")), name+".high")
-	t.band = container.NewVBox(widgets.FieldRow("  at least", t.low), widgets.FieldRow("  at most", t.high))
+	note := widget.NewLabel("")
+	note.Wrapping = fyne.TextWrapWord
+	t.low.Note, t.high.Note = note, note
+	t.band = widgets.Row("  lies within", container.NewGridWithColumns(2, t.low, t.high), note)
 	t.content = container.NewVBox(widgets.FieldRow(title, t.value), t.band)
 	return t
 }
@@ -87,5 +91,9 @@ func (t *temperature) show(f *audit.File) {
 	}
 	end(t.low, v.Low)
 	end(t.high, v.High)
-	t.band.Hidden = math.IsNaN(v.Low) && math.IsNaN(v.High)
+	if math.IsNaN(v.Low) && math.IsNaN(v.High) {
+		t.band.Hide()
+	} else {
+		t.band.Show()
+	}
 }

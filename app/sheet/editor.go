@@ -12,6 +12,7 @@ import (
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
+	"barlitre/audit"
 	"barlitre/audit/figures"
 	"barlitre/audit/pen"
 	"barlitre/circuit"
@@ -26,9 +27,11 @@ type editor struct {
 	circuit int // in the file, −1 for none
 	name    string
 	drawn   *circuit.Circuit
-	sheet   *figures.Sheet // of the file
-	moved   *figures.Sheet // while blocks are dragged, and until the file follows
-	boxes   []blockBox     // of sheet, in the circuit's coordinates
+	plain   *figures.Sheet    // of the file
+	sheet   *figures.Sheet    // plain, with labels laid for the results
+	labels  *audit.CircuitRun // the results
+	moved   *figures.Sheet    // while blocks are dragged, and until the file follows
+	boxes   []blockBox        // of sheet, in the circuit's coordinates
 	state   *figures.SheetState
 	opt     figures.SheetOptions
 
@@ -82,11 +85,13 @@ func newEditor(s *Station, index int) *editor {
 func (e *editor) show(at int, c *circuit.Circuit) {
 	e.cancel()
 	other := c == nil || e.name != c.Name
-	e.circuit, e.drawn, e.moved, e.sheet, e.boxes, e.name = at, c, nil, nil, nil, ""
+	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.name = at, c, nil, nil, nil, nil, nil, ""
 	if c == nil {
 		return
 	}
-	e.name, e.sheet = c.Name, figures.NewSheet(c)
+	e.name, e.plain = c.Name, figures.NewSheet(c)
+	e.sheet = e.plain
+	e.label(e.s.solved(c.Name))
 	e.boxes = boxesOf(e.sheet)
 	for id := range e.selected {
 		if c.Block(id) == nil {
@@ -97,6 +102,17 @@ func (e *editor) show(at int, c *circuit.Circuit) {
 		e.selected = map[string]bool{}
 		e.fitted = true
 	}
+	if e.fitted {
+		e.s.fitAll()
+	}
+}
+
+// label lays the labels for the results of the circuit, once for each.
+func (e *editor) label(run *audit.CircuitRun) {
+	if e.plain == nil || run == nil || run == e.labels {
+		return
+	}
+	e.labels, e.sheet = run, e.plain.Labelled(run.Duties...)
 	if e.fitted {
 		e.s.fitAll()
 	}

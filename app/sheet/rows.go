@@ -156,9 +156,9 @@ func (b *base) warnOf(text string) {
 
 // row is one line of the panel.
 type row interface {
-	fill()               // brings the file's value in
+	fill() // brings the file's value in
 	object() fyne.CanvasObject
-	keep()               // remembers what was typed and refused
+	keep() // remembers what was typed and refused
 	focus() fyne.Focusable
 }
 

@@ -64,6 +64,9 @@ func (s *Station) Changed(w station.What) {
 		s.bringCircuits(w.Has(station.Model))
 	}
 	if w.Has(station.Model | station.Solution | station.Settings | station.Selection) {
+		for _, e := range s.editors {
+			e.label(s.solved(e.name))
+		}
 		s.findings.reload()
 		s.scales = figures.ScalesOf(s.run(0), s.run(1))
 		s.bringOptions()
@@ -211,6 +214,7 @@ func (s *Station) recolour() {
 		s.cards[i].recolour()
 	}
 	s.panel.recolour()
+	s.findings.recolour()
 	s.bar.recolour()
 }
 

@@ -16,5 +16,16 @@
 // finds no room at all is left out. Numbers that are NaN or infinite are drawn
 // as missing. Nothing here panics.
 //
+// A Sheet is a circuit drawn with its results. It is laid out in modules of the symbol
+// grid, once for a drawing, and then drawn at any instant and scale:
+//
+//	sheet := figures.NewSheet(run.Circuit).Labelled(run.Duties...)
+//	sheet.Draw(p, x, y, scale, figures.StateAt(run.Duties[0], t), figures.SheetOptions{
+//		Palette: figures.Light, Scales: figures.ScalesOf(run.Duties...), Legend: true})
+//
+// Lines are as wide as the root of their flow and tinted by their pressure; chevrons
+// point where it flows. A disc behind a block has the area of its heat. Pressures [Pa]
+// and flows [m³/s] are those of the signals of a run, flow into a block positive.
+//
 // The places of what can be pointed at are returned, in the units of the caller.
 package figures

@@ -15,9 +15,12 @@ type blockHeat struct {
 	mean float64   // W
 }
 
+// smallHeat is the share of a circuit's heat below which blocks are shown together.
+const smallHeat = 0.002
+
 // HeatLane stacks the heat that a circuit puts into the oil over one cycle by block, in
 // unit u: the blocks with the most heat each by itself, the largest lowest, the others
-// together, with at most `most` layers. Means are of the energy balance, which sees
+// and what is small together, with at most `most` ≥ 1 layers. Means are of the energy balance, which sees
 // every time step; the course of a long run is thinned (audit.Plot). write prints a power [W].
 func HeatLane(c *audit.CircuitRun, run *audit.DutyRun, most int, u units.Unit, write func(watt float64) string) StackLane {
 	lane := StackLane{Title: c.Circuit.Name}
@@ -36,8 +39,15 @@ func HeatLane(c *audit.CircuitRun, run *audit.DutyRun, most int, u units.Unit, w
 	})
 	mean := run.Balance.HeatToOil().Total() / run.Balance.Cycle
 	lane.X, lane.Mean, lane.MeanNote = x, u.FromSI(mean), write(mean)
-	if most > 0 && len(blocks) > most {
-		blocks = append(blocks[:most-1:most-1], gatheredHeat(blocks[most-1:]))
+	n := 0 // blocks that stand by themselves
+	for n < len(blocks) && n < most && blocks[n].mean >= smallHeat*mean {
+		n++
+	}
+	if n == most && len(blocks) > most {
+		n--
+	}
+	if rest := blocks[n:]; len(rest) > 1 {
+		blocks = append(blocks[:n:n], gatheredHeat(rest))
 	}
 	for _, b := range blocks {
 		for i := range b.v {

@@ -152,7 +152,7 @@ func (d *sheetDrawing) highlights() {
 		if !sel && !hov {
 			continue
 		}
-		b := grown(p.body, 0.8)
+		b := grown(p.body, 0.5)
 		fill, edge := faded(d.pal.Gain, 20), pen.Stroke{W: 0.2, C: faded(d.pal.Gain, 120)}
 		if sel {
 			fill, edge = faded(d.pal.Gain, 34), pen.Stroke{W: 0.35, C: d.pal.Gain}

@@ -26,13 +26,17 @@ type part struct {
 	solid  []drawing.Box // where no label may stand
 }
 
+// farthest is the largest coordinate that counts as a place on a sheet [M], 25 m of
+// paper; what lies beyond, or is not a number, is placed anew.
+const farthest = 1e4
+
 // partsOf makes a part of every block, without a place yet.
 func partsOf(c *circuit.Circuit) []part {
 	parts := make([]part, 0, len(c.Blocks))
 	for i := range c.Blocks {
 		b := &c.Blocks[i]
 		p := part{id: b.ID, block: b, kind: circuit.KindNamed(b.Kind)}
-		if b.At != nil && finite(b.At[0]) && finite(b.At[1]) {
+		if b.At != nil && math.Abs(b.At[0]) <= farthest && math.Abs(b.At[1]) <= farthest {
 			p.at, p.fixed = drawing.Pt{X: b.At[0], Y: b.At[1]}, true
 		}
 		sym, ok := drawing.Lookup(circuit.SymbolOf(c, b))

@@ -223,20 +223,15 @@ func (d *stackLayout) layer(i, k int) {
 		return pen.Pt{X: max(-1e4, min(1e4, a.XAt(in.X[j]))), Y: a.YAt(i, v)}
 	}
 	var top, low []pen.Pt
-	at, thick := pen.Pt{}, 0.0
 	for j := range in.X {
-		if !finite(in.X[j]) {
-			continue
-		}
-		u, b := point(j, k), point(j, k-1)
-		top, low = append(top, u), append(low, b)
-		if b.Y-u.Y > thick && u.X > a.X+8 && u.X < a.X+a.W-8 {
-			at, thick = pen.Pt{X: u.X, Y: (u.Y + b.Y) / 2}, b.Y-u.Y
+		if finite(in.X[j]) {
+			top, low = append(top, point(j, k)), append(low, point(j, k-1))
 		}
 	}
 	if len(top) < 2 {
 		return
 	}
+	at, room := thickest(top, low)
 	slices.Reverse(low)
 	fill := d.layerColor(k)
 	d.p.Polyline(append(slices.Clone(top), low...), true, fill, pen.Stroke{})
@@ -245,9 +240,46 @@ func (d *stackLayout) layer(i, k int) {
 		edge = d.pal.Ink
 	}
 	d.p.Polyline(top, false, color.NRGBA{}, pen.Stroke{W: 0.8, C: edge})
-	if s := strconv.Itoa(k + 1); thick > smallSize+3 {
+	if s := strconv.Itoa(k + 1); room && at.X > a.X+6 && at.X < a.X+a.W-6 {
 		d.p.Text(pen.Pt{X: at.X, Y: at.Y + capHalf*smallSize}, s, smallSize, d.pal.On(fill), pen.Center, true)
 	}
+}
+
+// thickest returns the middle of the longest stretch in which there is room for a number.
+func thickest(top, low []pen.Pt) (at pen.Pt, ok bool) {
+	const high, wide = smallSize + 3, 13.0
+	best := wide
+	begin := -1
+	for j := range top {
+		thick := low[j].Y-top[j].Y > high
+		if thick && begin < 0 {
+			begin = j
+		}
+		if begin >= 0 && (!thick || j == len(top)-1) {
+			end := j
+			if !thick {
+				end--
+			}
+			if w := top[end].X - top[begin].X; w > best {
+				best, ok = w, true
+				at = middle(top[begin:end+1], low[begin:end+1])
+			}
+			begin = -1
+		}
+	}
+	return at, ok
+}
+
+// middle returns the point half way along and half way up between two lines.
+func middle(top, low []pen.Pt) pen.Pt {
+	x := (top[0].X + top[len(top)-1].X) / 2
+	j := max(1, sort.Search(len(top)-1, func(i int) bool { return top[i].X >= x }))
+	a := pen.Pt{X: top[j-1].X, Y: (top[j-1].Y + low[j-1].Y) / 2}
+	b := pen.Pt{X: top[j].X, Y: (top[j].Y + low[j].Y) / 2}
+	if b.X <= a.X {
+		return b
+	}
+	return between(a, b, x)
 }
 
 // layerLegend names the layers right of a lane, the uppermost first.

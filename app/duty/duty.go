@@ -1,0 +1,249 @@
+// Package duty is the Duty station: what the axes must do over time, as plots under
+// the clock and as a table that can be typed into.
+package duty
+
+import (
+	"fmt"
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/canvas"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/circuit"
+	cycle "barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+// Station is the Duty station.
+type Station struct {
+	ctx     station.Context
+	content fyne.CanvasObject
+	filled  fyne.CanvasObject // shown when there is a duty
+	empty   fyne.CanvasObject
+	picker  *widget.Select
+	facts   *widget.Label
+	source  *widget.Label
+	plot    *widgets.ClockPlot
+	table   *widgets.Table
+	refusal *widget.Label
+	notes   *fyne.Container
+	ground  *canvas.Rectangle
+	loading bool
+
+	shown  *cycle.Duty // of the file that is shown
+	of     string      // name of the duty in the table
+	tracks []track
+}
+
+// New makes the station.
+func New(ctx station.Context) station.Station {
+	s := &Station{ctx: ctx}
+	s.build()
+	return s
+}
+
+// Name is the word on the job rail.
+func (s *Station) Name() string { return "Duty" }
+
+// Content is the page.
+func (s *Station) Content() fyne.CanvasObject { return s.content }
+
+func (s *Station) build() {
+	s.picker = widgets.Name(widget.NewSelect(nil, nil), "duty.picker")
+	s.picker.PlaceHolder = "no duty"
+	s.picker.OnChanged = func(string) {
+		if i := s.picker.SelectedIndex(); !s.loading && i >= 0 {
+			s.ctx.SetDuty(i)
+		}
+	}
+	s.facts = widgets.Name(widget.NewLabel(""), "duty.facts")
+	s.facts.Truncation = fyne.TextTruncateEllipsis
+	s.source = widgets.Name(widget.NewLabel(""), "duty.source")
+	s.source.Wrapping = fyne.TextWrapWord
+	s.plot = widgets.Name(widgets.NewClockPlot(fyne.NewSize(300, 120), s.ctx.Palette), "duty.plot")
+	s.plot.Moved = s.ctx.SetClock
+	s.plot.Value = s.valueAt
+	s.plot.Format = func(t float64) string { return s.ctx.Text(t, units.Time, 4) }
+	s.refusal = widgets.Name(widget.NewLabel(""), "duty.refusal")
+	s.refusal.Wrapping = fyne.TextWrapWord
+	s.refusal.Importance = widget.LowImportance
+	s.table = widgets.Name(s.newTable(), "duty.table")
+	s.notes = container.NewVBox()
+	s.ground = canvas.NewRectangle(s.ctx.Palette().Card)
+	s.filled = s.lay()
+	s.empty = container.NewCenter(widgets.Name(widget.NewLabelWithStyle(
+		"No duty yet. A duty says what each axis must do over time: how fast, against which load, how many hours a year.\n"+
+			"Write it under “duties:” in the audit file, as rows of points or with the name of a CSV file that a logger wrote.",
+		fyne.TextAlignCenter, fyne.TextStyle{}), "duty.empty"))
+	s.content = container.NewStack(s.filled, s.empty)
+}
+
+// lay puts the parts together.
+func (s *Station) lay() fyne.CanvasObject {
+	pick := container.New(&leastWidth{220}, s.picker)
+	head := container.NewBorder(nil, nil, pick, nil, s.facts)
+	plot := container.NewStack(s.ground, container.NewVScroll(widgets.Spaced(s.plot)))
+	table := container.NewBorder(nil, s.refusal, nil, nil, s.table)
+	lower := container.NewHSplit(table, container.NewVScroll(s.notes))
+	lower.Offset = 0.68
+	both := container.NewVSplit(plot, lower)
+	both.Offset = 0.54
+	return widgets.Spaced(container.NewBorder(container.NewVBox(head, s.source), nil, nil, nil, both))
+}
+
+// leastWidth gives an object a width, at scale 1, whatever it asks for.
+type leastWidth struct{ width float32 }
+
+func (l *leastWidth) Layout(objects []fyne.CanvasObject, size fyne.Size) {
+	for _, o := range objects {
+		o.Move(fyne.NewPos(0, (size.Height-o.MinSize().Height)/2))
+		o.Resize(fyne.NewSize(size.Width, o.MinSize().Height))
+	}
+}
+
+func (l *leastWidth) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	m := fyne.NewSize(l.width*widgets.Scale(), 0)
+	for _, o := range objects {
+		m.Height = max(m.Height, o.MinSize().Height)
+	}
+	return m
+}
+
+// Changed shows what changed.
+func (s *Station) Changed(w station.What) {
+	switch {
+	case w.Has(station.Model | station.Settings):
+		s.reload()
+	case w.Has(station.Selection) && s.current() != s.shown:
+		s.reload()
+	case w.Has(station.Solution):
+		s.fillNotes()
+	}
+	s.plot.SetClock(s.ctx.Clock())
+}
+
+// current is the duty at hand, or nil.
+func (s *Station) current() *cycle.Duty {
+	f := s.ctx.Doc().File()
+	if f == nil || s.ctx.Duty() < 0 || s.ctx.Duty() >= len(f.Duties) {
+		return nil
+	}
+	return f.Duties[s.ctx.Duty()]
+}
+
+// recorded is where the duty at hand was read from; the zero Source for one whose
+// points stand in the audit file.
+func (s *Station) recorded() audit.Source {
+	f := s.ctx.Doc().File()
+	if i := s.ctx.Duty(); f != nil && i >= 0 && i < len(f.Sources) {
+		return f.Sources[i]
+	}
+	return audit.Source{}
+}
+
+func (s *Station) reload() {
+	d := s.current()
+	s.shown = d
+	if d == nil {
+		s.filled.Hide()
+		s.empty.Show()
+		return
+	}
+	s.empty.Hide()
+	s.filled.Show()
+	s.fillPicker()
+	s.tracks = s.tracksOf(d)
+	setText(s.facts, s.factsOf(d))
+	s.fillSource(d)
+	s.ground.FillColor = s.ctx.Palette().Card
+	s.ground.Refresh()
+	s.fillPlot(d)
+	s.fillTable(d)
+	s.fillNotes()
+}
+
+func setText(l *widget.Label, text string) {
+	if l.Text != text {
+		l.SetText(text)
+	}
+}
+
+// fillPicker lists the duties; two may have one name while a file is mended.
+func (s *Station) fillPicker() {
+	var names []string
+	for i, d := range s.ctx.Doc().File().Duties {
+		name := d.Name
+		for _, n := range names {
+			if n == name {
+				name = fmt.Sprintf("%s (%d)", d.Name, i+1)
+			}
+		}
+		names = append(names, name)
+	}
+	s.loading = true
+	s.picker.SetOptions(names)
+	s.picker.SetSelectedIndex(s.ctx.Duty())
+	s.loading = false
+}
+
+// factsOf is what the file says of a duty besides its points.
+func (s *Station) factsOf(d *cycle.Duty) string {
+	var parts []string
+	if d.Hours > 0 {
+		parts = append(parts, s.ctx.Local(units.Number(d.Hours/units.Hour, 4))+"\u202fh a year")
+	} else {
+		parts = append(parts, "no hours a year: left out of the year")
+	}
+	if d.Repeats {
+		parts = append(parts, "repeats without pause")
+	} else {
+		parts = append(parts, "one recording, its mean is taken")
+	}
+	parts = append(parts, "one cycle takes "+s.ctx.Text(d.Cycle(), units.Time, 4))
+	if d.Step > 0 {
+		parts = append(parts, "time steps of "+s.ctx.Text(d.Step, units.Time, 2))
+	} else {
+		parts = append(parts, "time steps at the rows only")
+	}
+	return strings.Join(parts, "  ·  ")
+}
+
+func (s *Station) fillSource(d *cycle.Duty) {
+	src := s.recorded()
+	if src.File == "" {
+		s.source.Hide()
+		return
+	}
+	setText(s.source, fmt.Sprintf("Read from %s: %d rows, SHA-256 %s. It can be read here but not changed: change the file, then open the audit again.",
+		src.File, len(d.Time), src.SHA256))
+	s.source.Show()
+}
+
+// Mend reports whether a duty is at fault.
+func (s *Station) Mend() bool {
+	for _, f := range s.ctx.Doc().Findings() {
+		if ofDuty(f) && (f.Level == circuit.Stops || f.Level == circuit.Warns) {
+			return true
+		}
+	}
+	return false
+}
+
+// ofDuty reports whether a finding is about a duty and no block.
+func ofDuty(f circuit.Finding) bool { return f.Duty != "" && f.Block == "" }
+
+// Help is the short help.
+func (s *Station) Help() string {
+	return "A duty cycle says what each axis of the machine must do over time. All circuits are balanced over the same duties, so what they do at the load can be compared.\n\n" +
+		"Pick a duty at the top. The plot shows every track; click or drag in it to move the clock, or use the arrow keys once it has the focus. The values at the clock stand beside the line.\n\n" +
+		"The table holds the points: one row a time stamp, one column a track, linear in between; two rows with one time are a step. Click a cell twice, or press Enter or F2, or just type. " +
+		"A bare number is in the unit of the column; another unit may be typed with it, such as “150 mm/s”. Decimal comma and point are both understood. " +
+		"Enter takes the value; Escape brings the old one back. What is refused stays in its cell, marked, with the reason below. A block of cells can be pasted from a spreadsheet.\n\n" +
+		"Speed above zero extends a cylinder or hoists; a load above zero resists that. A duty that was read from a CSV file is changed in that file. Hours, step and phases are changed in the audit file.\n\n" +
+		"The notes tell whether the strokes close, below which speed an axis counts as standing, and what was found."
+}

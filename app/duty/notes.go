@@ -1,0 +1,111 @@
+package duty
+
+import (
+	"fmt"
+	"math"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/circuit"
+	cycle "barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+// fillNotes writes what there is to know of the duty at hand.
+func (s *Station) fillNotes() {
+	d := s.shown
+	if d == nil {
+		return
+	}
+	s.notes.Objects = nil
+	s.note("", "Notes", widget.MediumImportance, true)
+	for i, f := range s.findings(d) {
+		mark, importance := "", widget.MediumImportance
+		if f.Level == circuit.Stops || f.Level == circuit.Warns || f.Level == circuit.Caution {
+			mark, importance = "⚠ ", widget.DangerImportance
+		}
+		text := f.Text
+		if f.Circuit != "" {
+			text = f.Circuit + ": " + text
+		}
+		s.note(fmt.Sprintf("finding%d", i+1), mark+s.ctx.Local(text), importance, false)
+	}
+	for _, a := range s.ctx.Doc().File().Axes {
+		if text := s.closure(d, a); text != "" {
+			s.note("closure."+a.Name, text, widget.MediumImportance, false)
+		}
+	}
+	for _, text := range s.standstill(d) {
+		s.note("standstill."+text[0], text[1], widget.MediumImportance, false)
+	}
+	if s.recorded().File == "" {
+		s.note("fixed", "Hours, step and phases stand in the audit file and are changed there.", widget.LowImportance, false)
+	}
+	s.notes.Refresh()
+}
+
+func (s *Station) note(name, text string, importance widget.Importance, bold bool) {
+	l := widget.NewLabelWithStyle(text, fyne.TextAlignLeading, fyne.TextStyle{Bold: bold})
+	l.Wrapping = fyne.TextWrapWord
+	l.Importance = importance
+	if name != "" {
+		widgets.Name(l, "duty.note."+name)
+	}
+	s.notes.Add(l)
+}
+
+// findings are those about the duty at hand. The drift of a stroke has its own note.
+func (s *Station) findings(d *cycle.Duty) []circuit.Finding {
+	var out []circuit.Finding
+	said := map[string]bool{}
+	for _, f := range s.ctx.Doc().Findings() {
+		if ofDuty(f) && f.Duty == d.Name && f.Level != circuit.Note && !said[f.Text] {
+			said[f.Text] = true
+			out = append(out, f)
+		}
+	}
+	return out
+}
+
+// closure says how far an axis drifts with a cycle.
+func (s *Station) closure(d *cycle.Duty, a cycle.Axis) string {
+	drift, way, known := audit.StrokeDrift(d, a.Name)
+	length := units.Length
+	if a.Kind == cycle.Rotary {
+		length = units.Angle
+	}
+	switch {
+	case !known || way == 0:
+		return ""
+	case math.Abs(drift) <= 1e-6*way:
+		return fmt.Sprintf("Axis %s ends where it began, after %s there and back.", a.Name, s.ctx.Text(way, length, 4))
+	case d.Repeats:
+		return fmt.Sprintf("Axis %s ends %s from where it began; each cycle adds that much. Close the strokes.", a.Name, s.ctx.Text(drift, length, 3))
+	}
+	return fmt.Sprintf("Axis %s ends %s from where it began.", a.Name, s.ctx.Text(drift, length, 3))
+}
+
+// standstill says below which speed an axis counts as standing.
+func (s *Station) standstill(d *cycle.Duty) [][2]string {
+	if len(d.Check()) > 0 {
+		return nil // said as findings
+	}
+	var out [][2]string
+	share := s.ctx.Local(units.Format(cycle.StandstillShare, units.Percent, 2))
+	for _, a := range d.Series(s.ctx.Doc().File().Axes, false).Axes {
+		dim := units.Velocity
+		if a.Axis.Kind == cycle.Rotary {
+			dim = units.AngularSpeed
+		}
+		if a.Top > 0 {
+			out = append(out, [2]string{a.Axis.Name, fmt.Sprintf("Axis %s counts as standing below %s, %s of its highest speed %s.",
+				a.Axis.Name, s.ctx.Text(cycle.StandstillShare*a.Top, dim, 2), share, s.ctx.Text(a.Top, dim, 3))})
+		} else if a.Speed != nil {
+			out = append(out, [2]string{a.Axis.Name, "Axis " + a.Axis.Name + " stands throughout."})
+		}
+	}
+	return out
+}

@@ -1,0 +1,135 @@
+package duty
+
+import (
+	"fmt"
+	"strings"
+
+	"fyne.io/fyne/v2"
+
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	cycle "barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+// newTable makes the table of points.
+func (s *Station) newTable() *widgets.Table {
+	t := widgets.NewTable(fyne.NewSize(240, 90), s.ctx.Palette)
+	t.Note = s.refusal
+	t.Empty = "This duty has no points."
+	t.Editable = func(row, col int) bool {
+		return s.recorded().File == "" && col < len(s.tracks) && row < len(s.tracks[col].values)
+	}
+	t.EditText = func(row, col int) string { return s.ctx.Local(plain(s.tracks[col], row)) }
+	t.Commit = s.commit
+	t.Paste = s.paste
+	t.Hint = s.hint
+	return t
+}
+
+// plain is a value in full, as a number in the unit of its column.
+func plain(k track, row int) string {
+	return strings.TrimSpace(strings.TrimSuffix(units.FileText(k.values[row], k.unit), k.unit.Symbol))
+}
+
+func (s *Station) fillTable(d *cycle.Duty) {
+	if s.of != d.Name {
+		s.of = d.Name
+		s.table.Forget()
+		s.table.Select(-1, -1)
+	}
+	var cols []widgets.Column
+	for _, k := range s.tracks {
+		cols = append(cols, widgets.Column{Name: k.name, Head: strings.TrimSpace(k.of + "\n" + k.what), Unit: k.unit.Label()})
+	}
+	tracks := s.tracks
+	s.table.SetData(cols, len(d.Time), func(r int) widgets.TableRow {
+		row := widgets.TableRow{}
+		for _, k := range tracks {
+			text := "–" // a column too short
+			if r < len(k.values) {
+				text = s.ctx.Local(units.Number(k.unit.FromSI(k.values[r]), digits(k)))
+			}
+			row.Cells = append(row.Cells, text)
+		}
+		return row
+	})
+}
+
+// digits of a cell: time stamps need more, since they grow while their steps do not.
+func digits(k track) int {
+	if k.name == "t" {
+		return 6
+	}
+	return 4
+}
+
+// written brings what was typed into the form that files have: "1,5" in the column
+// of a speed becomes "1.5 m/s".
+func written(k track, text string) (string, error) {
+	if strings.TrimSpace(text) == "" {
+		return "", fmt.Errorf("the cell is empty; type a number, 0 for none")
+	}
+	si, u, err := units.ParseLoose(text, k.unit.Dim, k.unit)
+	if err != nil {
+		return "", err
+	}
+	return units.FileText(si, u), nil
+}
+
+// commit sends one cell to the file.
+func (s *Station) commit(row, col int, text string) error {
+	quantity, err := written(s.tracks[col], text)
+	if err != nil {
+		return err
+	}
+	return s.ctx.Doc().SetPoint(s.shown.Name, s.tracks[col].name, row, quantity)
+}
+
+// paste sends a block to the file, as one step of undo: all of it or nothing.
+func (s *Station) paste(row, col int, block [][]string) {
+	if src := s.recorded().File; src != "" {
+		s.ctx.Fail(fmt.Errorf("paste: the duty is read from %s; change it there. Nothing was changed", src))
+		return
+	}
+	name, tracks := s.shown.Name, s.tracks
+	err := s.ctx.Doc().Edit("Paste into "+name, func(f *audit.File) error {
+		for r, cells := range block {
+			for c, text := range cells {
+				if row+r >= len(s.shown.Time) || col+c >= len(tracks) {
+					return fmt.Errorf("the block has %d rows and %d columns and does not fit from row %d, %s, on", len(block), len(cells), row+1, tracks[col].name)
+				}
+				quantity, err := written(tracks[col+c], text)
+				if err == nil {
+					err = f.SetPoint(name, tracks[col+c].name, row+r, quantity)
+				}
+				if err != nil {
+					return fmt.Errorf("row %d, %s: %w", row+r+1, tracks[col+c].name, err)
+				}
+			}
+		}
+		return nil
+	})
+	if err != nil {
+		s.ctx.Fail(fmt.Errorf("paste: %w. Nothing was changed", err))
+	}
+}
+
+// hint says what the selected cell takes.
+func (s *Station) hint(row, col int) string {
+	switch {
+	case row < 0 || col < 0 || col >= len(s.tracks):
+		return "Select a cell and type. Between rows all is linear; two rows with one time are a step."
+	case s.recorded().File != "":
+		return "Read from " + s.recorded().File + ", so it cannot be changed here."
+	}
+	k := s.tracks[col]
+	return fmt.Sprintf("Row %d, %s in %s. Type a number, or one with another unit; Enter takes it, Escape does not.", row+1, k.name, unitWord(k.unit))
+}
+
+func unitWord(u units.Unit) string {
+	if u.Label() == "" {
+		return "parts of 1"
+	}
+	return u.Label()
+}

@@ -1,0 +1,105 @@
+package duty
+
+import (
+	"fyne.io/fyne/v2"
+
+	"barlitre/audit"
+	"barlitre/audit/figures"
+	cycle "barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+// track is one column of the duty at hand, in the unit it is shown in.
+type track struct {
+	name   string // as in files: "ram.speed"; "t" for the time
+	of     string
+	what   string
+	unit   units.Unit
+	values []float64 // SI
+}
+
+// quantities of the tracks, for axes along a line and axes that turn.
+var quantities = map[cycle.What][2]units.Dim{
+	cycle.Speed:    {units.Velocity, units.AngularSpeed},
+	cycle.Position: {units.Length, units.Angle},
+	cycle.Load:     {units.Force, units.Torque},
+}
+
+// tracksOf returns time and tracks, axis by axis as the file lists them, then the
+// commands of blocks.
+func (s *Station) tracksOf(d *cycle.Duty) []track {
+	sys := s.ctx.System()
+	out := []track{{name: "t", of: "time", unit: units.Preferred(units.Time, sys), values: d.Time}}
+	known := map[string]bool{}
+	add := func(t cycle.Track, kind cycle.AxisKind) {
+		u := units.Percent
+		if dims, ok := quantities[t.What]; ok {
+			u = units.Preferred(dims[kind], sys)
+		}
+		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), unit: u, values: t.Values})
+	}
+	for _, a := range s.ctx.Doc().File().Axes {
+		known[a.Name] = true
+		for _, t := range d.Tracks {
+			if t.Of == a.Name {
+				add(t, a.Kind)
+			}
+		}
+	}
+	for _, t := range d.Tracks {
+		if !known[t.Of] {
+			add(t, cycle.Linear)
+		}
+	}
+	return out
+}
+
+func (s *Station) fillPlot(d *cycle.Duty) {
+	p := figures.Plot{Phases: phasesOf(d), Axis: "time", AxisUnit: s.tracks[0].unit.Label()}
+	for _, t := range s.tracks[1:] {
+		role := figures.RoleGain
+		if t.what == cycle.Load.String() {
+			role = figures.RoleInk
+		}
+		p.Lanes = append(p.Lanes, figures.Lane{Title: t.of + " " + t.what, Unit: t.unit.Label(), Zero: true,
+			Series: []figures.Series{{Name: "asked", X: inUnit(d.Time, s.tracks[0].unit), Y: inUnit(t.values, t.unit), Role: role}}})
+	}
+	s.plot.SetMin(fyne.NewSize(300, float32(60+62*len(p.Lanes))))
+	s.plot.SetPlot(p)
+	s.plot.SetClock(s.ctx.Clock())
+}
+
+func phasesOf(d *cycle.Duty) []figures.Phase {
+	var out []figures.Phase
+	for i, p := range d.Phases {
+		to := p.From
+		if i+1 < len(d.Phases) {
+			to = d.Phases[i+1].From
+		} else if n := len(d.Time); n > 0 {
+			to = d.Time[n-1]
+		}
+		out = append(out, figures.Phase{Name: p.Name, From: p.From, To: to})
+	}
+	return out
+}
+
+func inUnit(si []float64, u units.Unit) []float64 {
+	out := make([]float64, len(si))
+	for i, v := range si {
+		out[i] = u.FromSI(v)
+	}
+	return out
+}
+
+// valueAt is the value of a lane at the clock, as text.
+func (s *Station) valueAt(lane int, t float64) string {
+	if s.shown == nil || lane+1 >= len(s.tracks) {
+		return ""
+	}
+	k := s.tracks[lane+1]
+	if len(k.values) != len(s.shown.Time) {
+		return "" // a fault of the file, which the findings tell
+	}
+	course := audit.Track{T: s.shown.Time, V: k.values}
+	return s.ctx.Local(units.Format(course.At(t), k.unit, 3))
+}

@@ -1,0 +1,49 @@
+package sheet
+
+import (
+	"testing"
+
+	"fyne.io/fyne/v2"
+
+	"barlitre/app/station"
+)
+
+// The pages are drawn in every size and colour; what they show is looked at in the
+// pictures, which are written when BARLITRE_PICTURES names a folder.
+func TestPages(t *testing.T) {
+	b := newBench(t, "baling-press.yaml", fyne.NewSize(1190, 590))
+	b.win.Resize(fyne.NewSize(1200, 590))
+	b.SetClock(23)
+	b.picture("circuit-light")
+	b.Select(0, "RV1")
+	b.picture("relief-light")
+	b.Select(0, "V1")
+	b.theme(true, 1)
+	b.picture("valve-dark")
+	b.s.setEnergy(true)
+	b.Select(1, "P1")
+	b.picture("cycle-dark")
+	b.theme(false, 1)
+	b.s.setWide(true)
+	b.picture("wide-light")
+	b.s.setWide(false)
+	b.s.setEnergy(false)
+	b.win.Resize(fyne.NewSize(930, 480))
+	b.s.Changed(station.Everything)
+	b.picture("small-folded")
+	b.s.togglePanel()
+	b.picture("small-open")
+	b.theme(false, 2)
+	b.win.Resize(fyne.NewSize(1200, 590))
+	b.picture("scale-200")
+	b.s.setWide(true)
+	b.picture("scale-200-wide")
+}
+
+func TestEmptyPage(t *testing.T) {
+	b := newBench(t, "", fyne.NewSize(1200, 590))
+	b.picture("empty")
+	if got := b.s.editors[0].DumpText(); got != "empty" {
+		t.Errorf("an empty audit shows %q", got)
+	}
+}

@@ -1,0 +1,251 @@
+package sheet
+
+import (
+	"fmt"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/canvas"
+	"fyne.io/fyne/v2/container"
+
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/audit/pen"
+	"barlitre/circuit"
+)
+
+// panel shows the selected block, or with none the circuit.
+type panel struct {
+	s       *Station
+	paper   *canvas.Rectangle
+	head    *widgets.Figure
+	list    *fyne.Container
+	scroll  *container.Scroll
+	live    *live
+	rows    []row
+	all     *link
+	content *fyne.Container
+
+	shows    string            // circuit and block that the rows are of
+	expanded bool              // values left at their defaults are listed as well
+	drafts   map[string]string // refused texts, by target
+}
+
+func newPanel(s *Station) *panel {
+	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}}
+	p.head = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), p.drawHead), "sheet.title")
+	p.live = newLive(p)
+	p.list = container.New(tight{})
+	p.scroll = container.NewVScroll(container.New(edges{}, p.list))
+	inner := container.NewBorder(p.head, nil, nil, nil, p.scroll)
+	p.content = container.NewStack(p.paper, container.New(inset{4}, inner))
+	return p
+}
+
+// edges leaves room left and right, and for the scroll bar.
+type edges struct{}
+
+func (edges) Layout(objects []fyne.CanvasObject, size fyne.Size) {
+	k := widgets.Scale()
+	for _, o := range objects {
+		put(o, 8*k, 0, size.Width-18*k, size.Height)
+	}
+}
+
+func (edges) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	return fyne.NewSize(0, objects[0].MinSize().Height+8)
+}
+
+// width is that of the rows [units].
+func (p *panel) width() float32 { return (panelWidth - 2*4 - 18) * widgets.Scale() }
+
+// at returns the circuit that the panel is about, and the selected block.
+func (p *panel) at() (c *audit.CircuitEntry, b *circuit.Block) {
+	file := p.s.ctx.Doc().File()
+	i, block := p.s.ctx.Selected()
+	if i < 0 {
+		i = p.s.editors[p.s.active].circuit
+	}
+	if file == nil || i < 0 || i >= len(file.Circuits) {
+		return nil, nil
+	}
+	c = &file.Circuits[i]
+	if block != "" {
+		b = c.Block(block)
+	}
+	return c, b
+}
+
+// changed brings in what changed.
+func (p *panel) changed(w station.What) {
+	if w.Has(station.Model | station.Selection | station.Settings) {
+		if shows := p.key(); shows != p.shows || w.Has(station.Settings) {
+			p.shows = shows
+			p.rebuild()
+		} else {
+			p.fill()
+		}
+	}
+	if w.Has(station.Model | station.Solution | station.Selection | station.Settings) {
+		p.warn()
+		p.live.replot()
+	}
+	p.live.moved()
+	p.relay()
+}
+
+// key names what the rows are made for: a block of another kind under the same name
+// needs other rows.
+func (p *panel) key() string {
+	c, b := p.at()
+	switch {
+	case c == nil:
+		return ""
+	case b == nil:
+		return c.Name + "/"
+	}
+	return c.Name + "/" + b.ID + "/" + b.Kind
+}
+
+// rebuild makes the rows anew.
+func (p *panel) rebuild() {
+	p.leave()
+	p.rows, p.all = nil, nil
+	c, b := p.at()
+	switch {
+	case c == nil:
+	case b == nil:
+		p.circuitRows(c)
+	default:
+		p.blockRows(c, b)
+	}
+	p.list.Objects = nil
+	for _, r := range p.rows {
+		r.fill()
+		p.list.Add(r.object())
+	}
+	if p.all != nil {
+		p.list.Add(p.all)
+	}
+	p.list.Add(p.live.content)
+	for _, r := range p.rows {
+		if f, ok := r.(interface{ restore() }); ok {
+			f.restore()
+		}
+	}
+	p.scroll.ScrollToTop()
+	p.head.Refresh()
+}
+
+// leave hands over what is being typed and remembers what was refused.
+func (p *panel) leave() {
+	rows := p.rows
+	if w := p.s.ctx.Window(); w != nil {
+		focused := w.Canvas().Focused()
+		for _, r := range rows {
+			if focused != nil && r.focus() == focused {
+				w.Canvas().Unfocus()
+			}
+		}
+	}
+	for _, r := range rows {
+		r.keep()
+	}
+}
+
+func (p *panel) fill() {
+	for _, r := range p.rows {
+		r.fill()
+	}
+	p.head.Refresh()
+}
+
+// warn puts the findings about a parameter below its row.
+func (p *panel) warn() {
+	c, b := p.at()
+	for _, r := range p.rows {
+		w, ok := r.(interface {
+			key() string
+			warnOf(string)
+		})
+		if !ok || c == nil || b == nil {
+			continue
+		}
+		text := ""
+		for _, f := range p.s.findings.list {
+			if f.Circuit == c.Name && f.Block == b.ID && f.Parameter != "" && f.Parameter == w.key() && f.Level != circuit.Note {
+				text = "⚠ " + f.Text
+			}
+		}
+		w.warnOf(text)
+	}
+}
+
+// relay lays the panel out again after a row has grown.
+func (p *panel) relay() {
+	p.list.Refresh()
+	p.scroll.Refresh()
+}
+
+// focusFirst goes from the sheet to the first field.
+func (p *panel) focusFirst() {
+	w := p.s.ctx.Window()
+	if w == nil || len(p.rows) == 0 {
+		return
+	}
+	if !p.s.panelOpen() {
+		p.s.togglePanel()
+	}
+	w.Canvas().Focus(p.rows[0].focus())
+}
+
+// showParameter makes sure that the field of a parameter is there, and goes to it.
+func (p *panel) showParameter(key string) {
+	has := func() row {
+		for _, r := range p.rows {
+			if k, ok := r.(interface{ key() string }); ok && k.key() == key {
+				return r
+			}
+		}
+		return nil
+	}
+	if has() == nil && p.all != nil {
+		p.expanded = true
+		p.rebuild()
+		p.relay()
+	}
+	r := has()
+	if w := p.s.ctx.Window(); r != nil && w != nil && p.s.panelOpen() {
+		w.Canvas().Focus(r.focus())
+		p.scroll.Offset.Y = max(0, r.object().Position().Y-20)
+		p.scroll.Refresh()
+	}
+}
+
+func (p *panel) drawHead(g pen.Pen, w, h float64) []widgets.Part {
+	pal := p.s.ctx.Palette()
+	title, sub := p.titles()
+	const left = 8.0
+	short := pen.Shorten(title, 14, true, w-2*left)
+	g.Text(pen.Pt{X: left, Y: 18}, short, 14, pal.Ink, pen.Left, true)
+	g.Text(pen.Pt{X: left, Y: 34}, pen.Shorten(sub, 11, false, w-2*left), 11, pal.Secondary, pen.Left, false)
+	return []widgets.Part{{Name: "block", Text: title + ", " + sub, W: w, H: h}}
+}
+
+// titles are what stands on top of the panel.
+func (p *panel) titles() (title, sub string) {
+	c, b := p.at()
+	switch {
+	case c == nil:
+		return "Properties", "Open an audit to see its circuits"
+	case b == nil:
+		return c.Name, fmt.Sprintf("circuit, %s · %d blocks; click one to see its values", c.Role, len(c.Blocks))
+	}
+	sub = b.Kind
+	if k := circuit.KindNamed(b.Kind); k != nil {
+		sub = lower(k.Title)
+	}
+	return b.ID, sub + " · " + c.Name
+}
+
+func (p *panel) recolour() { paper(p.paper, p.s.ctx.Palette()) }

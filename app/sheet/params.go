@@ -1,0 +1,376 @@
+package sheet
+
+import (
+	"errors"
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/circuit"
+	"barlitre/machines/units"
+)
+
+// lower makes a title part of a sentence; an abbreviation stays as it is.
+func lower(s string) string {
+	first, n := utf8.DecodeRuneInString(s)
+	if second, _ := utf8.DecodeRuneInString(s[n:]); unicode.IsUpper(second) {
+		return s
+	}
+	return string(unicode.ToLower(first)) + s[n:]
+}
+
+// blockRows makes the rows of a block: what was given or must be, and when asked for
+// what is left at its default.
+func (p *panel) blockRows(c *audit.CircuitEntry, b *circuit.Block) {
+	k := circuit.KindNamed(b.Kind)
+	if k == nil {
+		return
+	}
+	later := 0
+	for i := range k.Params {
+		q := &k.Params[i]
+		if !p.expanded && !p.listed(c, b, q) {
+			later++
+			continue
+		}
+		p.rows = append(p.rows, p.paramRow(c.Name, b.ID, q))
+	}
+	if later > 0 || p.expanded {
+		p.all = newLink("", func() {
+			p.expanded = !p.expanded
+			p.rebuild()
+			p.warn()
+			p.relay()
+		})
+		p.all.SetText(pick(p.expanded, "Hide values left at their defaults", fmt.Sprintf("Show %d more values, left at their defaults", later)))
+		widgets.Name(p.all, "sheet.all")
+	}
+}
+
+// listed tells whether a parameter is worth a row at once.
+func (p *panel) listed(c *audit.CircuitEntry, b *circuit.Block, q *circuit.Param) bool {
+	_, value := b.Values[q.Key]
+	_, word := b.Words[q.Key]
+	if value || word || q.Need {
+		return true
+	}
+	_, draft := p.drafts[c.Name+"/"+b.ID+"."+q.Key]
+	return draft || slices.ContainsFunc(p.s.findings.list, func(f circuit.Finding) bool {
+		return f.Circuit == c.Name && f.Block == b.ID && f.Parameter == q.Key && f.Level != circuit.Note
+	})
+}
+
+func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
+	target := circuitName + "/" + block + "." + q.Key
+	if q.Type == circuit.Number {
+		return newNumberRow(p, circuitName, block, q, target)
+	}
+	options := q.Choices
+	if q.Type == circuit.AxisRef {
+		options = nil
+		for _, a := range p.s.ctx.Doc().File().Axes {
+			options = append(options, a.Name)
+		}
+	}
+	r := &choiceRow{selectRow: newSelectRow(p, q.Title, "field."+q.Key, target, options), param: q}
+	r.value = func() (string, string) {
+		b := p.block(circuitName, block)
+		if b == nil {
+			return "", ""
+		}
+		if w := b.Word(q.Key); w != "" || q.Default == "" {
+			return w, q.Text
+		}
+		return q.Default, "default" + reason(q) + join("; ", q.Text)
+	}
+	return r
+}
+
+type choiceRow struct {
+	*selectRow
+	param *circuit.Param
+}
+
+func (r *choiceRow) key() string { return r.param.Key }
+
+func join(link, text string) string {
+	if text == "" {
+		return ""
+	}
+	return link + text
+}
+
+// reason is why a default is what it is.
+func reason(q *circuit.Param) string {
+	switch {
+	case q.Source == "":
+		return ""
+	case q.Origin == circuit.NotStated:
+		return ": " + q.Source
+	}
+	return ", " + string(q.Origin) + ": " + q.Source
+}
+
+// block is a block of the present file, or nil.
+func (p *panel) block(circuitName, id string) *circuit.Block {
+	if c := p.s.ctx.Doc().File().Circuit(circuitName); c != nil {
+		return c.Block(id)
+	}
+	return nil
+}
+
+// numberRow is the row of a quantity: its number in the unit it was given in, where
+// it comes from, and behind a link its low, high and note.
+type numberRow struct {
+	*fieldRow
+	param   *circuit.Param
+	circuit string
+	block   string
+	origin  *widget.Select
+	more    *link
+	extra   []*fieldRow
+	filling bool
+}
+
+func (r *numberRow) key() string { return r.param.Key }
+
+func newNumberRow(p *panel, circuitName, block string, q *circuit.Param, target string) *numberRow {
+	r := &numberRow{param: q, circuit: circuitName, block: block}
+	r.fieldRow = newFieldRow(p, q.Title, "field."+q.Key, target, r.take)
+	r.value = r.shown
+	r.origin = widget.NewSelect(words(circuit.Origins), r.setOrigin)
+	r.origin.PlaceHolder = "origin?"
+	widgets.Name(r.origin, "field."+q.Key+".origin")
+	r.more = newLink("more", r.toggle)
+	widgets.Name(r.more, "field."+q.Key+".more")
+	r.head.Add(r.more)
+	r.stack(container.New(columns{0.5, 0.5}, r.field, r.origin))
+	return r
+}
+
+func words(list []circuit.Origin) []string {
+	var out []string
+	for _, o := range list {
+		out = append(out, string(o))
+	}
+	return out
+}
+
+// now is the value in the file; given is false for a default or none.
+func (r *numberRow) now() (v circuit.Value, given bool) {
+	b := r.p.block(r.circuit, r.block)
+	if b == nil {
+		return circuit.Value{}, false
+	}
+	v, given = b.Values[r.param.Key]
+	return v, given
+}
+
+// unitNow is the unit the number stands in: its own, else that of the default or of
+// the user.
+func (r *numberRow) unitNow() units.Unit {
+	if v, given := r.now(); given && v.Unit.Factor != 0 {
+		return v.Unit
+	}
+	sys := r.p.s.ctx.System()
+	if r.param.Default != "" && sys == units.Metric {
+		if _, u, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
+			return u
+		}
+	}
+	return units.Preferred(r.param.Dim, sys)
+}
+
+// number is a value in a unit without the unit, as typed.
+func (r *numberRow) number(si float64, u units.Unit) string {
+	if math.IsNaN(si) || math.IsInf(si, 0) {
+		return ""
+	}
+	text := strings.TrimSuffix(units.FileText(si, u), " "+u.Symbol)
+	return r.p.s.ctx.Local(text)
+}
+
+// shown is what stands in the row.
+func (r *numberRow) shown() (text, hint, placeholder, unit string) {
+	u := r.unitNow()
+	v, given := r.now()
+	var notes []string
+	if given {
+		text = r.number(v.SI, u)
+		if low, high := r.number(v.Low, u), r.number(v.High, u); low != "" || high != "" {
+			notes = append(notes, strings.TrimSpace(join("low ", low)+join(" high ", high)))
+		}
+		if v.Note != "" {
+			notes = append(notes, v.Note)
+		}
+	} else if r.param.Default != "" {
+		if si, _, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
+			placeholder = r.number(si, u)
+		}
+		notes = append(notes, "default"+reason(r.param))
+	} else {
+		notes = append(notes, "not given")
+	}
+	notes = append(notes, strings.TrimSuffix(r.param.Text+"; "+r.rangeText(u), "; "))
+	r.fillOrigin(v, given)
+	return text, strings.TrimPrefix(strings.Join(notes, " · "), "; "), placeholder, u.Label()
+}
+
+// rangeText says what the parameter may be.
+func (r *numberRow) rangeText(u units.Unit) string {
+	q := r.param
+	var out []string
+	show := func(x float64) string { return r.p.s.ctx.Local(units.Format(x, u, 4)) }
+	switch {
+	case q.Above:
+		out = append(out, "above "+show(q.Min))
+	case !math.IsInf(q.Min, 0):
+		out = append(out, "from "+show(q.Min))
+	}
+	if !math.IsInf(q.Max, 0) {
+		out = append(out, "to "+show(q.Max))
+	}
+	return strings.Join(out, " ")
+}
+
+// fillOrigin shows where the value comes from; a default has an origin of its own,
+// which cannot be changed.
+func (r *numberRow) fillOrigin(v circuit.Value, given bool) {
+	if r.origin == nil {
+		return
+	}
+	r.filling = true
+	defer func() { r.filling = false }()
+	origin := v.Origin
+	if !given {
+		origin = r.param.Origin
+	}
+	if r.origin.Selected != string(origin) {
+		r.origin.Selected = string(origin)
+		r.origin.Refresh()
+	}
+	if given == r.origin.Disabled() {
+		if given {
+			r.origin.Enable()
+		} else {
+			r.origin.Disable()
+		}
+	}
+}
+
+var errEmpty = errors.New("the field is empty; write a value, or press Escape to bring the old one back")
+
+// take reads what was typed, in any unit of the quantity, and hands it to the
+// document as a file writes it.
+func (r *numberRow) take(text string) error {
+	_, given := r.now()
+	if text == "" {
+		if given {
+			return errEmpty
+		}
+		return nil
+	}
+	si, u, err := units.ParseLoose(text, r.param.Dim, r.unitNow())
+	if err != nil {
+		return err
+	}
+	if bad := r.param.CheckValue(circuit.Value{SI: si, Unit: u, Low: math.NaN(), High: math.NaN()}); bad != "" {
+		return errors.New(r.p.s.ctx.Local(lower(r.param.Title) + " " + bad))
+	}
+	return r.p.s.ctx.Doc().Set(r.target, units.FileText(si, u))
+}
+
+func (r *numberRow) setOrigin(text string) {
+	if r.filling || text == "" {
+		return
+	}
+	if err := r.p.s.ctx.Doc().Set(r.target+".origin", text); err != nil {
+		r.say(err.Error(), true)
+	}
+	r.fill()
+	r.p.relay()
+}
+
+// toggle shows or hides low, high and note.
+func (r *numberRow) toggle() {
+	if r.extra != nil {
+		for _, x := range r.extra {
+			r.content.Remove(x.content)
+		}
+		r.extra = nil
+		r.more.SetText("more")
+	} else {
+		r.extra = []*fieldRow{r.bound("low", func(v circuit.Value) float64 { return v.Low }), r.bound("high", func(v circuit.Value) float64 { return v.High }), r.noteRow()}
+		for _, x := range r.extra {
+			x.fill()
+			r.content.Add(x.content)
+		}
+		r.more.SetText("less")
+	}
+	r.p.relay()
+}
+
+// bound is the row of the lowest or highest value it may have.
+func (r *numberRow) bound(which string, of func(circuit.Value) float64) *fieldRow {
+	target := r.target + "." + which
+	x := newFieldRow(r.p, r.param.Title+", "+which, "field."+r.param.Key+"."+which, target, func(text string) error {
+		if text == "" {
+			if v, _ := r.now(); !math.IsNaN(of(v)) {
+				return errEmpty
+			}
+			return nil
+		}
+		si, u, err := units.ParseLoose(text, r.param.Dim, r.unitNow())
+		if err != nil {
+			return err
+		}
+		return r.p.s.ctx.Doc().Set(target, units.FileText(si, u))
+	})
+	x.value = func() (string, string, string, string) {
+		v, given := r.now()
+		if !given {
+			return "", "set the value first", "", r.unitNow().Label()
+		}
+		return r.number(of(v), r.unitNow()), "", "", r.unitNow().Label()
+	}
+	x.stack(x.field)
+	return x
+}
+
+func (r *numberRow) noteRow() *fieldRow {
+	target := r.target + ".note"
+	x := newFieldRow(r.p, r.param.Title+", note", "field."+r.param.Key+".note", target, func(text string) error {
+		if v, _ := r.now(); text == "" && v.Note == "" {
+			return nil
+		}
+		return r.p.s.ctx.Doc().Set(target, text)
+	})
+	x.value = func() (string, string, string, string) {
+		v, given := r.now()
+		return v.Note, pick(given, "", "set the value first"), "", ""
+	}
+	x.stack(x.field)
+	return x
+}
+
+func (r *numberRow) fill() {
+	r.fieldRow.fill()
+	for _, x := range r.extra {
+		x.fill()
+	}
+}
+
+func (r *numberRow) keep() {
+	r.fieldRow.keep()
+	for _, x := range r.extra {
+		x.keep()
+	}
+}
