@@ -11,7 +11,7 @@ import (
 
 // Formulas that several figures share.
 const (
-	trapezoid   = "E = Σ ½·(P_k + P_k+1)·(t_k+1 − t_k)"
+	trapezoid   = "E = Σ ½·(P₁ + P₂)·(t₂ − t₁) over the time steps"
 	fromBalance = "powers of the balance at every time step, trapezoid rule"
 	fromFile    = "the audit file"
 )

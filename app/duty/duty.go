@@ -85,7 +85,7 @@ func (s *Station) build() {
 
 // lay puts the parts together.
 func (s *Station) lay() fyne.CanvasObject {
-	pick := container.New(&leastWidth{220}, s.picker)
+	pick := container.New(widgets.Wide(220), s.picker)
 	head := container.NewBorder(nil, nil, pick, nil, s.facts)
 	plot := container.NewStack(s.ground, container.NewVScroll(widgets.Spaced(s.plot)))
 	table := container.NewBorder(nil, s.refusal, nil, nil, s.table)
@@ -93,25 +93,7 @@ func (s *Station) lay() fyne.CanvasObject {
 	lower.Offset = 0.68
 	both := container.NewVSplit(plot, lower)
 	both.Offset = 0.54
-	return widgets.Spaced(container.NewBorder(container.NewVBox(head, s.source), nil, nil, nil, both))
-}
-
-// leastWidth gives an object a width, at scale 1, whatever it asks for.
-type leastWidth struct{ width float32 }
-
-func (l *leastWidth) Layout(objects []fyne.CanvasObject, size fyne.Size) {
-	for _, o := range objects {
-		o.Move(fyne.NewPos(0, (size.Height-o.MinSize().Height)/2))
-		o.Resize(fyne.NewSize(size.Width, o.MinSize().Height))
-	}
-}
-
-func (l *leastWidth) MinSize(objects []fyne.CanvasObject) fyne.Size {
-	m := fyne.NewSize(l.width*widgets.Scale(), 0)
-	for _, o := range objects {
-		m.Height = max(m.Height, o.MinSize().Height)
-	}
-	return m
+	return widgets.Spaced(container.NewBorder(head, nil, nil, nil, both))
 }
 
 // Changed shows what changed.
@@ -159,7 +141,6 @@ func (s *Station) reload() {
 	s.fillPicker()
 	s.tracks = s.tracksOf(d)
 	setText(s.facts, s.factsOf(d))
-	s.fillSource(d)
 	s.ground.FillColor = s.ctx.Palette().Card
 	s.ground.Refresh()
 	s.fillPlot(d)
@@ -213,15 +194,14 @@ func (s *Station) factsOf(d *cycle.Duty) string {
 	return strings.Join(parts, "  ·  ")
 }
 
-func (s *Station) fillSource(d *cycle.Duty) {
+// sourceOf says where the points of a recorded duty come from, "" for others.
+func (s *Station) sourceOf(d *cycle.Duty) string {
 	src := s.recorded()
 	if src.File == "" {
-		s.source.Hide()
-		return
+		return ""
 	}
-	setText(s.source, fmt.Sprintf("Read from %s: %d rows, SHA-256 %s. It can be read here but not changed: change the file, then open the audit again.",
-		src.File, len(d.Time), src.SHA256))
-	s.source.Show()
+	return fmt.Sprintf("Read from %s: %d rows, SHA-256 %s. It can be read here but not changed: change the file, then open the audit again.",
+		src.File, len(d.Time), src.SHA256)
 }
 
 // Mend reports whether a duty is at fault.

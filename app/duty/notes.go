@@ -22,6 +22,10 @@ func (s *Station) fillNotes() {
 	}
 	s.notes.Objects = nil
 	s.note("", "Notes", widget.MediumImportance, true)
+	if text := s.sourceOf(d); text != "" {
+		setText(s.source, text)
+		s.notes.Add(s.source)
+	}
 	for i, f := range s.findings(d) {
 		mark, importance := "", widget.MediumImportance
 		if f.Level == circuit.Stops || f.Level == circuit.Warns || f.Level == circuit.Caution {
@@ -102,10 +106,19 @@ func (s *Station) standstill(d *cycle.Duty) [][2]string {
 		}
 		if a.Top > 0 {
 			out = append(out, [2]string{a.Axis.Name, fmt.Sprintf("Axis %s counts as standing below %s, %s of its highest speed %s.",
-				a.Axis.Name, s.ctx.Text(cycle.StandstillShare*a.Top, dim, 2), share, s.ctx.Text(a.Top, dim, 3))})
+				a.Axis.Name, s.slow(cycle.StandstillShare*a.Top, dim), share, s.ctx.Text(a.Top, dim, 3))})
 		} else if a.Speed != nil {
 			out = append(out, [2]string{a.Axis.Name, "Axis " + a.Axis.Name + " stands throughout."})
 		}
 	}
 	return out
+}
+
+// slow writes a speed that is too small for the user's unit.
+func (s *Station) slow(v float64, dim units.Dim) string {
+	if dim == units.Velocity && s.ctx.System() == units.Metric {
+		u, _ := units.ParseUnit("mm/s", dim)
+		return s.ctx.Local(units.Format(v, u, 2))
+	}
+	return s.ctx.Text(v, dim, 2)
 }

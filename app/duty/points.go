@@ -2,6 +2,7 @@ package duty
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
 	"fyne.io/fyne/v2"
@@ -42,13 +43,16 @@ func (s *Station) fillTable(d *cycle.Duty) {
 	for _, k := range s.tracks {
 		cols = append(cols, widgets.Column{Name: k.name, Head: strings.TrimSpace(k.of + "\n" + k.what), Unit: k.unit.Label()})
 	}
-	tracks := s.tracks
+	tracks, places := s.tracks, make([]int, len(s.tracks))
+	for c, k := range tracks {
+		places[c] = decimals(k)
+	}
 	s.table.SetData(cols, len(d.Time), func(r int) widgets.TableRow {
 		row := widgets.TableRow{}
-		for _, k := range tracks {
+		for c, k := range tracks {
 			text := "–" // a column too short
 			if r < len(k.values) {
-				text = s.ctx.Local(units.Number(k.unit.FromSI(k.values[r]), digits(k)))
+				text = s.ctx.Local(rounded(k.unit.FromSI(k.values[r]), places[c]))
 			}
 			row.Cells = append(row.Cells, text)
 		}
@@ -56,12 +60,45 @@ func (s *Station) fillTable(d *cycle.Duty) {
 	})
 }
 
-// digits of a cell: time stamps need more, since they grow while their steps do not.
-func digits(k track) int {
+// decimals are how many places after the point the values of a column need to be
+// told apart as they were typed: at most digits in all. Of very many rows some are
+// looked at.
+func decimals(k track) int {
+	digits := 4
 	if k.name == "t" {
-		return 6
+		digits = 7 // times grow while their steps do not
 	}
-	return 4
+	most := 0.0
+	for _, v := range k.values {
+		most = math.Max(most, math.Abs(k.unit.FromSI(v)))
+	}
+	limit := max(0, digits-whole(most))
+	for n := 0; n < limit; n++ {
+		scale, fits := math.Pow(10, float64(n)), true
+		for i := 0; i < len(k.values) && fits; i += max(1, len(k.values)/400) {
+			x := k.unit.FromSI(k.values[i])
+			fits = math.Abs(math.Round(x*scale)/scale-x) <= 1e-9*most
+		}
+		if fits {
+			return n
+		}
+	}
+	return limit
+}
+
+// whole is the number of digits before the point, 0 or less for a number below 1.
+func whole(x float64) int {
+	if x == 0 || math.IsInf(x, 0) || math.IsNaN(x) {
+		return 1
+	}
+	return int(math.Floor(math.Log10(math.Abs(x)))) + 1
+}
+
+// rounded writes a number with so many places after the point.
+func rounded(x float64, places int) string {
+	scale := math.Pow(10, float64(places))
+	x = math.Round(x*scale) / scale
+	return units.Number(x, max(1, whole(x)+places))
 }
 
 // written brings what was typed into the form that files have: "1,5" in the column

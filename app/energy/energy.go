@@ -96,7 +96,7 @@ func (s *Station) lay() fyne.CanvasObject {
 	right.Offset = 0.6
 	split := container.NewHSplit(s.paper(left, false), right)
 	split.Offset = 0.44
-	head := container.NewBorder(nil, nil, container.New(&wide{250}, s.scope), nil, s.caption)
+	head := container.NewBorder(nil, nil, container.New(widgets.Wide(250), s.scope), nil, s.caption)
 	return widgets.Spaced(container.NewBorder(head, nil, nil, nil, split))
 }
 
@@ -120,24 +120,6 @@ func (s *Station) colour() {
 		}
 		r.Refresh()
 	}
-}
-
-// wide gives an object a width, at scale 1.
-type wide struct{ width float32 }
-
-func (l *wide) Layout(objects []fyne.CanvasObject, size fyne.Size) {
-	for _, o := range objects {
-		o.Move(fyne.NewPos(0, (size.Height-o.MinSize().Height)/2))
-		o.Resize(fyne.NewSize(size.Width, o.MinSize().Height))
-	}
-}
-
-func (l *wide) MinSize(objects []fyne.CanvasObject) fyne.Size {
-	m := fyne.NewSize(l.width*widgets.Scale(), 0)
-	for _, o := range objects {
-		m.Height = max(m.Height, o.MinSize().Height)
-	}
-	return m
 }
 
 // Changed shows what changed.

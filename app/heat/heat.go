@@ -62,21 +62,24 @@ func wrapped(name string) *widget.Label {
 
 func (h *Heat) build() {
 	h.plot = newPlot(h.ctx)
-	h.table = widgets.Name(widgets.NewFigureTable(h.ctx.Explain, h.ctx.Local), "heat.table")
+	h.table = widgets.NewFigureTable(h.ctx.Palette, h.ctx.Explain, h.ctx.Local)
+	widgets.Name(h.table.Table, "heat.table")
 	h.oil = newTemperature(h.ctx, "Oil temperature", "oil.temperature", "heat.oil")
 	h.air = newTemperature(h.ctx, "Air temperature", "air.temperature", "heat.air")
 	h.empty, h.fault, h.basis = wrapped("heat.empty"), wrapped("heat.fault"), wrapped("heat.basis")
 	h.caution, h.hot = wrapped("heat.caution"), wrapped("heat.hot")
 	h.fault.Importance = widget.DangerImportance
 	h.basis.Importance = widget.LowImportance
-	h.tableOf = container.NewVBox(h.table, h.fault, h.basis)
+	h.tableOf = container.NewVBox(h.table.Table, h.fault, h.basis)
 	side := container.NewVBox(
 		widgets.Card("Temperatures", container.NewVBox(h.oil.content, h.air.content, h.caution)),
 		widget.NewSeparator(),
 		widgets.Card("Mean heat and the cooler for it", container.NewVBox(h.empty, h.tableOf)),
 		h.hot,
 	)
-	split := container.NewHSplit(widgets.Spaced(h.plot.content), container.NewVScroll(widgets.Spaced(side)))
+	scroll := container.NewVScroll(widgets.Spaced(side))
+	h.table.In(scroll)
+	split := container.NewHSplit(widgets.Spaced(h.plot.content), scroll)
 	split.Offset = 0.62
 	h.content = split
 }
@@ -118,7 +121,11 @@ func (h *Heat) figures() {
 	head, rows := rows(r)
 	h.table.Set(head, rows)
 	h.fault.SetText(h.ctx.Local(fault(s)))
-	h.fault.Hidden = h.fault.Text == ""
+	if h.fault.Text == "" {
+		h.fault.Hide()
+	} else {
+		h.fault.Show()
+	}
 	h.basis.SetText(h.ctx.Local(basis(r)))
 	h.caution.SetText("")
 	if len(r.Assumptions) > 0 { // the first says what oil all circuits have, and what follows

@@ -5,8 +5,6 @@ import (
 	"strings"
 	"testing"
 
-	"fyne.io/fyne/v2/test"
-
 	"barlitre/app/station"
 	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
@@ -43,7 +41,7 @@ func TestTemperaturesChangeTheCooler(t *testing.T) {
 		s := c.Solution()
 		oil, _, _ := units.ParseLoose(step.oil, units.Temperature, units.Preferred(units.Temperature, units.Metric))
 		air, _, _ := units.ParseLoose(step.air, units.Temperature, units.Preferred(units.Temperature, units.Metric))
-		text := h.table.DumpText()
+		text := h.table.Text()
 		for _, run := range s.Circuits {
 			for _, d := range run.Duties {
 				mean := d.Balance.HeatToOil().Total() / d.Balance.Cycle
@@ -88,8 +86,8 @@ func TestAirWarmerThanOil(t *testing.T) {
 	typeInto(t, c, "heat.air", "36")
 	c.Wait()
 	h.Changed(station.Model | station.Solution)
-	if !h.Mend() || !strings.Contains(h.fault.Text, "not warmer than the air") || strings.Contains(h.table.DumpText(), "kW/K") {
-		t.Errorf("fault %q, table %s", h.fault.Text, h.table.DumpText())
+	if !h.Mend() || !strings.Contains(h.fault.Text, "not warmer than the air") || strings.Contains(h.table.Text(), "kW/K") {
+		t.Errorf("fault %q, table %s", h.fault.Text, h.table.Text())
 	}
 }
 
@@ -127,17 +125,18 @@ func TestFiguresOpen(t *testing.T) {
 	c := stationtest.New(t, winch)
 	h := shown(t, c)
 	n := 0
-	for _, o := range test.LaidOutObjects(h.content) {
-		if r, ok := o.(*widgets.Reading); ok && r.Open != nil {
-			test.Tap(r)
-			n++
-			if got := c.Explained[len(c.Explained)-1]; c.Local(got.Text) != r.DumpText() || got.Calculation.Formula == "" {
-				t.Errorf("%q opens %+v", r.DumpText(), got)
+	for i, row := range h.table.Rows() {
+		for j, f := range row.Cells {
+			h.table.Table.Tapped(i, j+1)
+			if got := c.Explained[len(c.Explained)-1]; got != f || got.Calculation.Formula == "" || h.table.Table.Cell(i, j+1) != f.Text {
+				t.Errorf("%q opens %+v", f.Text, got)
 			}
+			n++
 		}
+		h.table.Table.Tapped(i, 0) // a name opens nothing
 	}
-	if n < 8 {
-		t.Errorf("only %d figures can be opened", n)
+	if n != len(c.Explained) || n < 8 {
+		t.Errorf("%d figures, %d opened", n, len(c.Explained))
 	}
 }
 

@@ -41,19 +41,23 @@ func numbered(name string, i int) string {
 	return fmt.Sprintf("%s.%d", name, i+1)
 }
 
-func newDecision(ctx station.Context, i int) *decision {
+func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	d := &decision{ctx: ctx}
-	d.title = widget.NewLabelWithStyle("", fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
+	d.title = widget.NewLabelWithStyle("", fyne.TextAlignLeading, fyne.TextStyle{Sum: true})
 	d.title.Wrapping = fyne.TextWrapWord
 	d.verdict, d.warnings = text(numbered("payback.verdict", i)), text(numbered("payback.warnings", i))
 	d.warnings.Importance = widget.DangerImportance
 	d.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(300, 60), d.draw), numbered("payback.bars", i))
 	d.figure.Tapped = d.tapped
-	d.table = widgets.Name(widgets.NewFigureTable(ctx.Explain, ctx.Local), numbered("payback.table", i))
-	d.cost = widgets.Name(widgets.NewFigureTable(ctx.Explain, ctx.Local), numbered("payback.range", i))
+	d.table = widgets.NewFigureTable(ctx.Palette, ctx.Explain, ctx.Local)
+	widgets.Name(d.table.Table, numbered("payback.table", i))
+	d.cost = widgets.NewFigureTable(ctx.Palette, ctx.Explain, ctx.Local)
+	widgets.Name(d.cost.Table, numbered("payback.range", i))
+	d.table.In(in)
+	d.cost.In(in)
 	d.none = text(numbered("payback.none", i))
 	d.published = text(numbered("payback.published", i))
-	d.content = container.NewVBox(d.title, d.verdict, d.warnings, d.figure, d.table, widget.NewSeparator(), d.cost, d.none, d.published)
+	d.content = container.NewVBox(d.title, d.verdict, d.warnings, d.figure, d.table.Table, d.cost.Table, d.none, d.published)
 	return d
 }
 
@@ -72,12 +76,12 @@ func (d *decision) show(r *audit.Decision, c *audit.Comparison) {
 	if len(r.Warnings) > 0 {
 		d.warnings.SetText("▲ " + d.ctx.Local(strings.Join(r.Warnings, "\n▲ ")))
 	}
-	d.warnings.Hidden = len(r.Warnings) == 0
+	setHidden(d.warnings, len(r.Warnings) == 0)
 	d.loadBars(r)
 	d.loadTable(r)
 	d.loadCost(r, c)
 	d.published.SetText(d.ctx.Local(publishedText(r.Published)))
-	d.published.Hidden = d.published.Text == ""
+	setHidden(d.published, d.published.Text == "")
 }
 
 func publishedText(p audit.Published) string {
@@ -86,6 +90,14 @@ func publishedText(p audit.Published) string {
 		return "▲ " + text
 	}
 	return text
+}
+
+func setHidden(o fyne.CanvasObject, hidden bool) {
+	if hidden {
+		o.Hide()
+	} else {
+		o.Show()
+	}
 }
 
 func known(v float64) bool { return !math.IsNaN(v) && !math.IsInf(v, 0) }
@@ -150,9 +162,9 @@ func (d *decision) loadTable(r *audit.Decision) {
 		rows = append(rows, widgets.FigureRow{Name: "What it brings"})
 	}
 	for _, f := range r.Outcome {
-		rows = append(rows, widgets.FigureRow{Name: f.Name, Cells: []audit.Figure{{}, {}, f}, Bold: f.Name == "simple payback"})
+		rows = append(rows, widgets.FigureRow{Name: f.Name, Cells: []audit.Figure{{}, {}, f}, Sum: f.Name == "simple payback"})
 	}
-	d.table.Hidden = len(rows) == 0
+	setHidden(d.table.Table, len(rows) == 0)
 	d.table.Set([]string{"", r.Base, r.Proposal, "less"}, rows)
 }
 
@@ -167,8 +179,8 @@ func (d *decision) loadCost(r *audit.Decision, c *audit.Comparison) {
 				d.none.SetText(d.none.Text + " Type it at the left, under the cost of " + r.Proposal + ".")
 			}
 		}
-		d.none.Hidden = d.none.Text == ""
-		d.cost.Hide()
+		setHidden(d.none, d.none.Text == "")
+		d.cost.Table.Hide()
 		return
 	}
 	d.none.Hide()
@@ -178,7 +190,7 @@ func (d *decision) loadCost(r *audit.Decision, c *audit.Comparison) {
 			calc = f.Calculation
 		}
 	}
-	row := widgets.FigureRow{Name: "simple payback", Bold: true}
+	row := widgets.FigureRow{Name: "simple payback", Sum: true}
 	for _, v := range []float64{n.Low, n.Likely, n.High} {
 		row.Cells = append(row.Cells, audit.Figure{Name: "simple payback", Value: v, Text: units.Number(v, 2) + " years", Calculation: calc})
 	}
@@ -186,7 +198,7 @@ func (d *decision) loadCost(r *audit.Decision, c *audit.Comparison) {
 	for _, v := range []float64{cost.Low, cost.Likely, cost.High} {
 		costs.Cells = append(costs.Cells, audit.Figure{Name: "cost of the retrofit", Value: v, Text: units.Format(v, currency(d.ctx), 4)})
 	}
-	d.cost.Show()
+	d.cost.Table.Show()
 	d.cost.Set([]string{"", "low", "likely", "high"}, []widgets.FigureRow{costs, row})
 }
 

@@ -26,19 +26,23 @@ type Payback struct {
 	below   *fyne.Container // basis and exclusions
 	basis   *widget.Label
 	left    *widget.Label
+	scroll  *container.Scroll // of the results
 }
 
 // New makes the station.
 func New(ctx station.Context) station.Station {
 	p := &Payback{ctx: ctx, inputs: newInputs(ctx), results: container.NewVBox()}
 	p.empty = text("payback.empty")
-	p.alone = widgets.Name(widgets.NewFigureTable(ctx.Explain, ctx.Local), "payback.year")
+	p.alone = widgets.NewFigureTable(ctx.Palette, ctx.Explain, ctx.Local)
+	widgets.Name(p.alone.Table, "payback.year")
 	p.basis, p.left = text("payback.basis"), text("payback.excluded")
 	p.left.Importance, p.basis.Importance = widget.LowImportance, widget.LowImportance
 	p.below = container.NewVBox(widget.NewSeparator(), widgets.Card("What the figures rest on", p.basis),
 		widgets.Card("What they leave out", p.left))
-	right := container.NewVBox(p.empty, p.alone, p.results, p.below)
-	split := container.NewHSplit(container.NewVScroll(widgets.Spaced(p.inputs.content)), container.NewVScroll(widgets.Spaced(right)))
+	right := container.NewVBox(p.empty, p.alone.Table, p.results, p.below)
+	p.scroll = container.NewVScroll(widgets.Spaced(right))
+	p.alone.In(p.scroll)
+	split := container.NewHSplit(container.NewVScroll(widgets.Spaced(p.inputs.content)), p.scroll)
 	split.Offset = 0.36
 	p.content = split
 	return p
@@ -84,7 +88,7 @@ func (p *Payback) figures() {
 	if r == nil || s == nil {
 		p.empty.SetText("Cost and saving stand here as soon as there is a result. Draw the circuit as found and a proposal under Circuit, and their duty under Duty; both are then solved by themselves.")
 		p.empty.Show()
-		p.alone.Hide()
+		p.alone.Table.Hide()
 		p.results.Hide()
 		p.below.Hide()
 		return
@@ -101,7 +105,7 @@ func (p *Payback) compare(r *audit.Report, s *audit.Solution) {
 	if len(r.Decisions) != len(p.shown) {
 		p.shown, p.results.Objects = nil, nil
 		for i := range r.Decisions {
-			p.shown = append(p.shown, newDecision(p.ctx, i))
+			p.shown = append(p.shown, newDecision(p.ctx, i, p.scroll))
 			p.results.Add(p.shown[i].content)
 		}
 	}
@@ -110,13 +114,13 @@ func (p *Payback) compare(r *audit.Report, s *audit.Solution) {
 	}
 	if len(r.Decisions) > 0 {
 		p.empty.Hide()
-		p.alone.Hide()
+		p.alone.Table.Hide()
 		return
 	}
 	p.empty.SetText("There is nothing to compare yet. A payback needs a circuit as found and a proposal over the same duties: add a proposal under Circuit.")
 	p.empty.Show()
 	head, rows := yearRows(r)
-	p.alone.Hidden = len(rows) == 0
+	setHidden(p.alone.Table, len(rows) == 0)
 	p.alone.Set(head, rows)
 }
 

@@ -3,7 +3,6 @@ package sheet
 import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/layout"
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
@@ -27,12 +26,55 @@ func newBar(s *Station) *bar {
 	b.wide = button("sheet.wide", func() { s.setWide(!s.wide) })
 	b.heat = button("sheet.heat", func() { s.setEnergy(!s.energy) })
 	b.panel = button("sheet.panel", s.togglePanel)
-	b.content = container.NewHBox(b.fit, b.wide, b.heat, layout.NewSpacer(), b.panel)
+	b.content = container.New(flow{}, b.fit, b.wide, b.heat, b.panel)
 	b.fit.SetText("Fit (F)")
 	b.wide.SetText("Show one sheet (W)")
 	b.heat.SetText("Show heat over the cycle")
 	b.panel.SetText("Fold properties")
 	return b
+}
+
+// height of the bar at a width.
+func (b *bar) height(width float32) float32 { return flowRows(b.content.Objects, width, nil) }
+
+// flow puts buttons side by side, in further rows where there is no room, and the
+// last one at the right edge of its row.
+type flow struct{}
+
+func (flow) Layout(objects []fyne.CanvasObject, size fyne.Size) {
+	flowRows(objects, size.Width, func(o fyne.CanvasObject, x, y float32) {
+		o.Move(fyne.NewPos(x, y))
+		o.Resize(o.MinSize())
+	})
+}
+
+// MinSize is that of one button: the rest wraps.
+func (flow) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	m := fyne.Size{}
+	for _, o := range objects {
+		m = m.Max(o.MinSize())
+	}
+	return m
+}
+
+func flowRows(objects []fyne.CanvasObject, width float32, place func(o fyne.CanvasObject, x, y float32)) float32 {
+	x, y, row := float32(0), float32(0), float32(0)
+	for i, o := range objects {
+		m := o.MinSize()
+		if x > 0 && x+m.Width > width {
+			x, y = 0, y+row
+		}
+		row = m.Height
+		at := x
+		if i == len(objects)-1 {
+			at = max(x, width-m.Width)
+		}
+		if place != nil {
+			place(o, at, y)
+		}
+		x += m.Width + 4
+	}
+	return y + row
 }
 
 // reload says on each button what it does next.

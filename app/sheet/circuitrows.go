@@ -4,6 +4,8 @@ import (
 	"math"
 	"strings"
 
+	"fyne.io/fyne/v2/container"
+
 	"barlitre/audit"
 	"barlitre/circuit"
 	"barlitre/machines/units"
@@ -20,6 +22,7 @@ func (p *panel) circuitRows(c *audit.CircuitEntry) {
 		}
 		return "", "", "", ""
 	}
+	note.field.Scroll = container.ScrollHorizontalOnly
 	note.stack(note.field)
 	rest := newSelectRow(p, "Pumps while every axis stands", "field.pump_at_rest", name+"/pump_at_rest",
 		[]string{string(circuit.Keep), string(circuit.Unload), string(circuit.Stop)})

@@ -158,8 +158,9 @@ func (f *findings) drawHead(p pen.Pen, w, _ float64) []widgets.Part {
 		text += fmt.Sprintf(" · %d", n)
 	}
 	p.Text(pen.Pt{X: 8, Y: 18}, text, 14, pal.Ink, pen.Left, true)
-	if !f.s.ctx.Doc().Current() {
-		p.Text(pen.Pt{X: w - 8, Y: 18}, "being solved", 11, pal.Secondary, pen.Right, false)
+	doc := f.s.ctx.Doc()
+	if running, _, _ := doc.Solving(); running || !doc.Current() {
+		p.Text(pen.Pt{X: w - 8, Y: 18}, pick(running, "being solved", "not solved"), 11, pal.Secondary, pen.Right, false)
 	}
 	return nil
 }

@@ -28,7 +28,8 @@ const (
 	panelWidth  = 300
 	edgeWidth   = 26
 	gapWidth    = 8
-	panelShare  = 0.64 // of the height; the findings have the rest
+	panelShare  = 0.68 // of the height; the findings have the rest
+	twoSheets   = 560  // width under which two sheets cannot be read
 )
 
 // pageLayout places bar, sheets and panel.
@@ -40,7 +41,7 @@ func (s *Station) layOut() *fyne.Container {
 
 // MinSize lets the window be small; the sheets and the panel scroll.
 func (l pageLayout) MinSize([]fyne.CanvasObject) fyne.Size {
-	return fyne.NewSize(l.s.bar.content.MinSize().Width+2*gapWidth, 280)
+	return fyne.NewSize((panelWidth+200)*widgets.Scale(), 280)
 }
 
 // Layout places all and hides what does not belong on the page now.
@@ -62,14 +63,15 @@ func (l pageLayout) Layout(_ []fyne.CanvasObject, size fyne.Size) {
 		put(s.edge, right-edgeWidth*k, gap, edgeWidth*k, size.Height-2*gap)
 		right -= edgeWidth*k + gap
 	}
-	bar := s.bar.content.MinSize().Height
+	bar := s.bar.height(right - gap)
 	put(s.bar.content, gap, gap/2, right-gap, bar)
+	s.single = s.wide || right-gap < twoSheets*k
 	top := bar + gap
 	height := max(0, size.Height-top-gap)
 	for i := range s.cards {
-		show(s.cards[i].content, !s.wide || i == s.active)
+		show(s.cards[i].content, !s.single || i == s.active)
 	}
-	if s.wide {
+	if s.single {
 		put(s.cards[s.active].content, gap, top, right-gap, height)
 		return
 	}

@@ -15,6 +15,7 @@ type link struct {
 	do      func()
 	text    *canvas.Text
 	ring    *canvas.Rectangle
+	lead    bool // the word stands at the left
 	focused bool
 	over    bool
 }
@@ -88,7 +89,11 @@ func (r *linkRenderer) dress() {
 
 func (r *linkRenderer) Layout(size fyne.Size) {
 	m := r.l.text.MinSize()
-	r.l.text.Move(fyne.NewPos(size.Width-m.Width-4, (size.Height-m.Height)/2))
+	x := size.Width - m.Width - 4
+	if r.l.lead {
+		x = 0
+	}
+	r.l.text.Move(fyne.NewPos(x, (size.Height-m.Height)/2))
 	r.l.text.Resize(m)
 	r.l.ring.Resize(size)
 }

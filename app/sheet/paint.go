@@ -63,7 +63,7 @@ func (e *editor) draw(p pen.Pen) {
 // ownLegend tells whether the legend is drawn here: on the first sheet that is shown,
 // and on the second where it is at another zoom.
 func (e *editor) ownLegend() bool {
-	if e.index == 0 || e.s.wide || e.s.editors[0].state == nil {
+	if e.index == 0 || e.s.single || e.s.editors[0].state == nil {
 		return true
 	}
 	r := e.zoom / e.s.editors[0].zoom

@@ -120,6 +120,9 @@ func (p *panel) rebuild() {
 		p.blockRows(c, b)
 	}
 	p.list.Objects = nil
+	if b == nil {
+		p.list.Add(p.live.content)
+	}
 	for _, r := range p.rows {
 		r.fill()
 		p.list.Add(r.object())
@@ -127,7 +130,9 @@ func (p *panel) rebuild() {
 	if p.all != nil {
 		p.list.Add(p.all)
 	}
-	p.list.Add(p.live.content)
+	if b != nil {
+		p.list.Add(p.live.content)
+	}
 	for _, r := range p.rows {
 		if f, ok := r.(interface{ restore() }); ok {
 			f.restore()

@@ -50,6 +50,7 @@ func (p *panel) blockRows(c *audit.CircuitEntry, b *circuit.Block) {
 			p.warn()
 			p.relay()
 		})
+		p.all.lead = true
 		p.all.SetText(pick(p.expanded, "Hide values left at their defaults", fmt.Sprintf("Show %d more values, left at their defaults", later)))
 		widgets.Name(p.all, "sheet.all")
 	}
@@ -137,6 +138,7 @@ type numberRow struct {
 	origin  *widget.Select
 	more    *link
 	extra   []*fieldRow
+	about   *widget.Label
 	filling bool
 }
 
@@ -202,43 +204,62 @@ func (r *numberRow) number(si float64, u units.Unit) string {
 func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 	u := r.unitNow()
 	v, given := r.now()
-	var notes []string
-	if given {
-		text = r.number(v.SI, u)
-		if low, high := r.number(v.Low, u), r.number(v.High, u); low != "" || high != "" {
-			notes = append(notes, strings.TrimSpace(join("low ", low)+join(" high ", high)))
-		}
-		if v.Note != "" {
-			notes = append(notes, v.Note)
-		}
-	} else if r.param.Default != "" {
-		if si, _, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
-			placeholder = r.number(si, u)
-		}
-		notes = append(notes, "default"+reason(r.param))
-	} else {
-		notes = append(notes, "not given")
-	}
-	notes = append(notes, strings.TrimSuffix(r.param.Text+"; "+r.rangeText(u), "; "))
 	r.fillOrigin(v, given)
-	return text, strings.TrimPrefix(strings.Join(notes, " · "), "; "), placeholder, u.Label()
+	if given {
+		return r.number(v.SI, u), r.givenHint(v, u), "", u.Label()
+	}
+	if r.param.Default == "" {
+		return "", "not given; " + r.rangeText(u), "", u.Label()
+	}
+	if si, _, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
+		placeholder = r.number(si, u)
+	}
+	return "", "default" + reason(r.param) + "; " + r.rangeText(u), placeholder, u.Label()
 }
 
-// rangeText says what the parameter may be.
+// givenHint is what is known of a value besides, and what it may be.
+func (r *numberRow) givenHint(v circuit.Value, u units.Unit) string {
+	var notes []string
+	if low := r.number(v.Low, u); low != "" {
+		notes = append(notes, "low "+low)
+	}
+	if high := r.number(v.High, u); high != "" {
+		notes = append(notes, "high "+high)
+	}
+	notes = append(notes, r.rangeText(u))
+	if v.Note != "" {
+		notes = append(notes, v.Note)
+	}
+	return strings.Join(notes, " · ")
+}
+
+// rangeText says what the parameter may be, in the unit of the row.
 func (r *numberRow) rangeText(u units.Unit) string {
 	q := r.param
-	var out []string
-	show := func(x float64) string { return r.p.s.ctx.Local(units.Format(x, u, 4)) }
+	show := func(x float64) string { return r.p.s.ctx.Local(plain(units.Number(u.FromSI(x), 4))) }
+	low, high := "any", ""
 	switch {
 	case q.Above:
-		out = append(out, "above "+show(q.Min))
+		low = "above " + show(q.Min)
 	case !math.IsInf(q.Min, 0):
-		out = append(out, "from "+show(q.Min))
+		low = "from " + show(q.Min)
 	}
 	if !math.IsInf(q.Max, 0) {
-		out = append(out, "to "+show(q.Max))
+		high = " to " + show(q.Max)
 	}
-	return strings.Join(out, " ")
+	return low + high
+}
+
+// plain drops zeros at the end of a decimal number.
+func plain(text string) string {
+	mantissa, exp, has := strings.Cut(text, "e")
+	if strings.Contains(mantissa, ".") {
+		mantissa = strings.TrimRight(strings.TrimRight(mantissa, "0"), ".")
+	}
+	if has {
+		return mantissa + "e" + exp
+	}
+	return mantissa
 }
 
 // fillOrigin shows where the value comes from; a default has an origin of its own,
@@ -305,9 +326,13 @@ func (r *numberRow) toggle() {
 		for _, x := range r.extra {
 			r.content.Remove(x.content)
 		}
+		r.content.Remove(r.about)
 		r.extra = nil
 		r.more.SetText("more")
 	} else {
+		r.about = r.p.label(widget.LowImportance)
+		r.about.SetText(upper(r.param.Text))
+		r.content.Add(r.about)
 		r.extra = []*fieldRow{r.bound("low", func(v circuit.Value) float64 { return v.Low }), r.bound("high", func(v circuit.Value) float64 { return v.High }), r.noteRow()}
 		for _, x := range r.extra {
 			x.fill()
@@ -357,6 +382,7 @@ func (r *numberRow) noteRow() *fieldRow {
 		v, given := r.now()
 		return v.Note, pick(given, "", "set the value first"), "", ""
 	}
+	x.field.Scroll = container.ScrollHorizontalOnly
 	x.stack(x.field)
 	return x
 }

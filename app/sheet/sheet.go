@@ -23,7 +23,8 @@ type Station struct {
 
 	proposal string // name of the chosen proposal, "" = the first
 	energy   bool   // discs show a cycle instead of an instant
-	wide     bool   // one sheet in full width
+	wide     bool   // one sheet in full width, as asked for
+	single   bool   // one sheet is shown, asked for or for want of room
 	active   int    // the sheet worked on last
 	fold     fold
 	scales   figures.SheetScales
@@ -273,7 +274,7 @@ func (s *Station) fitAll() {
 
 // sheetShown tells whether a sheet is on screen and has a circuit.
 func (s *Station) sheetShown(i int) bool {
-	return s.editors[i].circuit >= 0 && (!s.wide || i == s.active)
+	return s.editors[i].circuit >= 0 && (!s.single || i == s.active)
 }
 
 const helpText = `Two circuits, one duty, one clock: the circuit as found on the left, a proposal on the right. Move the clock below, and both show that instant.

@@ -27,7 +27,6 @@ type ClockPlot struct {
 	clock   float64
 	min     fyne.Size
 	raster  *canvas.Raster
-	ring    *canvas.Rectangle
 	line    *canvas.Rectangle
 	mark    *canvas.Raster
 	flags   []*flag
@@ -45,16 +44,15 @@ type flag struct {
 
 // NewClockPlot makes an empty plot with a least size.
 func NewClockPlot(min fyne.Size, palette func() figures.Palette) *ClockPlot {
-	c := &ClockPlot{Palette: palette, min: min, line: canvas.NewRectangle(color.Black), ring: canvas.NewRectangle(color.Transparent)}
+	c := &ClockPlot{Palette: palette, min: min, line: canvas.NewRectangle(color.Black)}
 	c.raster = canvas.NewRaster(c.paint)
 	c.raster.ScaleMode = canvas.ImageScalePixels
 	c.mark = canvas.NewRaster(c.paintMark)
-	c.ring.Hide()
 	c.ExtendBaseWidget(c)
 	return c
 }
 
-// Show brings in a plot.
+// SetPlot brings in a plot.
 func (c *ClockPlot) SetPlot(p figures.Plot) {
 	c.plot = p
 	c.flags = nil
@@ -127,6 +125,9 @@ func (c *ClockPlot) paint(w, h int) image.Image {
 	if vw, vh := c.view(); vw > 0 && vh > 0 {
 		c.drawn.Push(0, 0, float64(w)/vw)
 		c.plot.Draw(c.drawn, vw, vh, p)
+		if c.focused {
+			focusFrame(c.drawn, p, vw, vh)
+		}
 		c.drawn.Pop()
 	}
 	return c.drawn.Image()
@@ -144,9 +145,6 @@ func (c *ClockPlot) paintMark(w, h int) image.Image {
 func (c *ClockPlot) arrange() {
 	p := c.Palette()
 	k := Scale()
-	c.ring.StrokeColor, c.ring.StrokeWidth, c.ring.FillColor = p.Gain, 1.5, color.Transparent
-	c.ring.Resize(c.Size())
-	show(c.ring, c.focused)
 	a := c.area
 	on := len(a.Lanes) > 0 && c.clock >= a.From && c.clock <= a.To
 	show(c.line, on)
@@ -255,10 +253,10 @@ func (c *ClockPlot) to(at fyne.Position) {
 func (c *ClockPlot) Cursor() desktop.Cursor { return desktop.HResizeCursor }
 
 // FocusGained and FocusLost show where the keys go.
-func (c *ClockPlot) FocusGained() { c.focused = true; c.arrange() }
+func (c *ClockPlot) FocusGained() { c.focused = true; c.raster.Refresh() }
 
 // FocusLost is the end of it.
-func (c *ClockPlot) FocusLost() { c.focused = false; c.arrange() }
+func (c *ClockPlot) FocusLost() { c.focused = false; c.raster.Refresh() }
 
 // TypedRune is for text; a plot takes none.
 func (c *ClockPlot) TypedRune(rune) {}
@@ -335,5 +333,5 @@ func (r *clockRenderer) Objects() []fyne.CanvasObject {
 	for _, f := range r.c.flags {
 		out = append(out, f.ground, f.text)
 	}
-	return append(out, r.c.ring)
+	return out
 }

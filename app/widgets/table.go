@@ -57,6 +57,7 @@ type Table struct {
 	Note     *widget.Label                         // where refusals are said; may be nil
 	Hint     func(row, col int) string             // what Note says else
 	Empty    string                                // what is said without rows
+	Outer    func(*fyne.ScrollEvent)               // takes the wheel where there is nothing to scroll
 	min      fyne.Size
 	columns  []Column
 	rows     int
@@ -70,7 +71,6 @@ type Table struct {
 	selCol   int
 	refused  map[cellAt]refusal
 	raster   *canvas.Raster
-	ring     *canvas.Rectangle
 	editor   *cellEntry
 	editing  bool
 	focused  bool
@@ -100,8 +100,6 @@ func NewTable(min fyne.Size, palette func() figures.Palette) *Table {
 	t := &Table{Palette: palette, min: min, selRow: -1, selCol: -1, refused: map[cellAt]refusal{}, lastRows: map[int]TableRow{}}
 	t.raster = canvas.NewRaster(t.paint)
 	t.raster.ScaleMode = canvas.ImageScalePixels
-	t.ring = canvas.NewRectangle(nil)
-	t.ring.Hide()
 	t.editor = newCellEntry(t)
 	t.editor.Hide()
 	t.ExtendBaseWidget(t)
@@ -236,7 +234,7 @@ func (t *Table) lay() {
 	free := w - tableBar - sum
 	each, first := 0.0, 0.0
 	if free > 0 && len(t.columns) > 0 {
-		each = math.Min(18, free/float64(len(t.columns)))
+		each = math.Min(36, free/float64(len(t.columns)))
 		if t.columns[0].Left {
 			first = free - each*float64(len(t.columns))
 		}

@@ -11,30 +11,22 @@ import (
 	"barlitre/audit/pen"
 )
 
-// tableRenderer keeps the picture, the frame of the focus and the editor in place.
+// tableRenderer keeps the picture and the editor in place.
 type tableRenderer struct{ t *Table }
 
 func (r *tableRenderer) Layout(size fyne.Size) {
 	r.t.raster.Resize(size)
-	r.t.ring.Resize(size)
 	r.t.arrange()
 }
 func (r *tableRenderer) MinSize() fyne.Size { return r.t.MinSize() }
 func (r *tableRenderer) Refresh()           {}
 func (r *tableRenderer) Destroy()           {}
 func (r *tableRenderer) Objects() []fyne.CanvasObject {
-	return []fyne.CanvasObject{r.t.raster, r.t.ring, r.t.editor}
+	return []fyne.CanvasObject{r.t.raster, r.t.editor}
 }
 
-// arrange puts the editor over its cell, and the frame round a table with the focus.
+// arrange puts the editor over its cell.
 func (t *Table) arrange() {
-	p := t.Palette()
-	if t.focused || t.editing {
-		t.ring.StrokeColor, t.ring.StrokeWidth, t.ring.FillColor = p.Gain, 1.5, color.Transparent
-		t.ring.Show()
-	} else {
-		t.ring.Hide()
-	}
 	if !t.editing || t.selRow < 0 {
 		return
 	}
@@ -59,6 +51,9 @@ func (t *Table) paint(w, h int) image.Image {
 	if vw > 0 && vh > 0 {
 		t.drawn.Push(0, 0, float64(w)/vw)
 		t.draw(t.drawn, p, vw, vh)
+		if t.focused || t.editing {
+			focusFrame(t.drawn, p, vw, vh)
+		}
 		t.drawn.Pop()
 	}
 	return t.drawn.Image()
@@ -96,6 +91,11 @@ func (t *Table) draw(p pen.Pen, pal figures.Palette, w, h float64) {
 		hair(p, frozen, 0, frozen, top+viewH, pal.Edge)
 	}
 	t.drawBars(p, pal)
+}
+
+// focusFrame shows that the keys go to a figure.
+func focusFrame(p pen.Pen, pal figures.Palette, w, h float64) {
+	pen.Rect(p, 1, 1, w-2, h-2, color.NRGBA{}, pen.Stroke{W: 1.5, C: pal.Gain})
 }
 
 func hair(p pen.Pen, x0, y0, x1, y1 float64, c color.NRGBA) {

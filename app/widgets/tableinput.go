@@ -78,8 +78,12 @@ func (t *Table) DragEnd() { t.grabbed = gripNone }
 
 // Scrolled turns the wheel.
 func (t *Table) Scrolled(ev *fyne.ScrollEvent) {
+	x, y := t.scrollX, t.scrollY
 	dx, dy := float64(ev.Scrolled.DX), float64(ev.Scrolled.DY)
 	t.move(-dx, -dy)
+	if t.Outer != nil && x == t.scrollX && y == t.scrollY {
+		t.Outer(ev)
+	}
 }
 
 func (t *Table) move(dx, dy float64) {

@@ -52,7 +52,7 @@ func (t Theme) Color(name fyne.ThemeColorName, _ fyne.ThemeVariant) color.Color 
 	case theme.ColorNamePressed:
 		return faint(p.Ink, 40)
 	case theme.ColorNameShadow:
-		return faint(p.Ink, 24)
+		return faint(p.Ink, 12) // also the ground of split bars
 	case theme.ColorNameScrollBar:
 		return faint(p.Ink, 80)
 	case theme.ColorNameScrollBarBackground:

@@ -1,0 +1,183 @@
+package payback
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"barlitre/app/station"
+	"barlitre/app/station/stationtest"
+	"barlitre/app/widgets"
+	"barlitre/audit/pen"
+	"barlitre/machines/units"
+)
+
+const press, winch = "baling-press.yaml", "quayside-winch.yaml"
+
+func shown(t *testing.T, sample string) (*stationtest.Context, *Payback) {
+	t.Helper()
+	c := stationtest.New(t, sample)
+	p := New(c).(*Payback)
+	c.Show(p, 1190, 590)
+	return c, p
+}
+
+func typeInto(t *testing.T, c *stationtest.Context, name, text string) *widgets.Field {
+	t.Helper()
+	f := widgets.Named(name).(*widgets.Field)
+	c.Win.Canvas().Focus(f)
+	f.SetText(text)
+	c.Win.Canvas().Unfocus()
+	return f
+}
+
+func again(c *stationtest.Context, p *Payback) {
+	c.Wait()
+	p.Changed(station.Model | station.Solution)
+}
+
+// Payback is cost by saving and saving is energy by price: worked out here from the
+// balances and what is typed, it is what stands there.
+func TestInputsChangeThePayback(t *testing.T) {
+	c, p := shown(t, press)
+	typeInto(t, c, "payback.price.high", "0,4")
+	for _, step := range []struct {
+		price, hours, low, likely, high string
+		perkWh, h                       float64
+		cost                            [3]float64
+	}{
+		{"0.2", "4200", "10000", "20000", "45000", 0.2, 4200, [3]float64{10000, 20000, 45000}},
+		{"0,31 EUR/kWh", "3 000 h", "11000", "30000", "41 000 EUR", 0.31, 3000, [3]float64{11000, 30000, 41000}},
+	} {
+		for name, text := range map[string]string{"payback.price": step.price, "payback.hours.1": step.hours, "payback.hours.2": "0 h"} {
+			if f := typeInto(t, c, name, text); f.Bad() {
+				t.Fatalf("%s took not %q: %s", name, text, f.Note.Text)
+			}
+		}
+		for _, key := range []string{"high", "low", "likely", "high"} { // in an order in which each is within the others
+			typeInto(t, c, "payback.cost."+key, map[string]string{"low": step.low, "likely": step.likely, "high": step.high}[key])
+		}
+		again(c, p)
+		s := c.Solution()
+		drawn := func(i int) float64 {
+			d := s.Circuits[i].Duties[0]
+			return d.Balance.SupplyIn.Total() / d.Balance.Cycle * step.h * 3600 / 3.6e6
+		}
+		saving := (drawn(0) - drawn(1)) * step.perkWh
+		text := p.shown[0].table.Text() + " / " + p.shown[0].cost.Text()
+		want := []string{units.Number(drawn(0)*step.perkWh, 4) + "\u202fEUR", units.Number(drawn(1)*step.perkWh, 4) + "\u202fEUR", units.Number(saving, 4) + "\u202fEUR"}
+		for _, cost := range step.cost {
+			want = append(want, units.Number(cost/saving, 2)+" years", units.Number(cost, 4)+"\u202fEUR")
+		}
+		for _, w := range want {
+			if !strings.Contains(text, w) {
+				t.Errorf("price %s: %q is missing in %s", step.price, w, text)
+			}
+		}
+		if !strings.Contains(p.shown[0].verdict.Text, units.Number(step.cost[1]/saving, 2)+" years") {
+			t.Errorf("the verdict is %q", p.shown[0].verdict.Text)
+		}
+	}
+}
+
+func TestCostIsRefusedAndNothingLost(t *testing.T) {
+	c, _ := shown(t, press)
+	before := c.Document.Revision()
+	for text, reason := range map[string]string{"99999999": "between low and high", "30000 USD": "USD", "much": "much"} {
+		f := typeInto(t, c, "payback.cost.likely", text)
+		if !f.Bad() || f.Text != text || !strings.Contains(f.Note.Text, reason) || c.Document.Revision() != before {
+			t.Errorf("%q: taken, or refused with %q", text, f.Note.Text)
+		}
+	}
+}
+
+func TestOriginNoteCreditAndCO2(t *testing.T) {
+	c, p := shown(t, winch)
+	p.inputs.origin.SetSelected("assumed")
+	typeInto(t, c, "payback.price.note", "read: from a bill")
+	p.inputs.credit.SetChecked(!c.Document.File().CreditReturned)
+	typeInto(t, c, "payback.co2.year", "2023")
+	p.inputs.basis.SetSelected("market")
+	again(c, p)
+	f := c.Document.File()
+	if f.Price.Origin != "assumed" || f.Price.Note != "read: from a bill" || f.CO2Year != 2023 || f.CO2Basis != "market" || len(c.Failed) > 0 {
+		t.Errorf("the file has %v, %q, %d, %q; failed: %v", f.Price.Origin, f.Price.Note, f.CO2Year, f.CO2Basis, c.Failed)
+	}
+	if !strings.Contains(p.basis.Text, "2023, market-based") || strings.Contains(p.basis.Text, "is credited") != f.CreditReturned {
+		t.Errorf("the basis says %q", p.basis.Text)
+	}
+}
+
+// A click on a bar opens the figure that it shows.
+func TestBarsOpen(t *testing.T) {
+	c, p := shown(t, press)
+	d := p.shown[0]
+	parts := d.draw(pen.NewRecorder(), 700, 260)
+	if len(parts) != 6 {
+		t.Fatalf("%d bars", len(parts))
+	}
+	for i, part := range parts {
+		d.tapped(part, 0, 0)
+		got := c.Explained[len(c.Explained)-1]
+		if !strings.Contains(part.Text, got.Text) || got.Name != barRows[i/2] || math.IsNaN(got.Value) {
+			t.Errorf("%s opens %s %s", part.Text, got.Name, got.Text)
+		}
+	}
+	n := len(c.Explained)
+	for i, row := range d.table.Rows() {
+		for j := range row.Cells {
+			d.table.Table.Tapped(i, j+1)
+		}
+	}
+	if len(c.Explained) < n+15 {
+		t.Errorf("only %d figures of the table open", len(c.Explained)-n)
+	}
+}
+
+func TestPublishedAndExclusions(t *testing.T) {
+	c, p := shown(t, press)
+	r := c.Report()
+	if text := p.shown[0].published.Text; !strings.Contains(text, r.Decisions[0].Published.Text) || !strings.Contains(text, r.Decisions[0].Published.Explanation) {
+		t.Errorf("published: %q", text)
+	}
+	for _, e := range r.Exclusions {
+		if !strings.Contains(p.left.Text, e) {
+			t.Errorf("%q is not among what is left out", e)
+		}
+	}
+}
+
+// An audit that begins with nothing takes all inputs.
+func TestFromEmpty(t *testing.T) {
+	c, p := shown(t, "")
+	if !p.empty.Visible() || p.below.Visible() || p.Mend() {
+		t.Error("the empty state is not shown")
+	}
+	for name, text := range map[string]string{"payback.price": "0,18", "payback.co2": "0.35"} {
+		if f := typeInto(t, c, name, text); f.Bad() {
+			t.Errorf("%s: %s", name, f.Note.Text)
+		}
+	}
+	if f := c.Document.File(); f.Price.Text != "0.18 EUR/kWh" || f.CO2.Text != "0.35 kg/kWh" {
+		t.Errorf("price %q, CO2 %q", f.Price.Text, f.CO2.Text)
+	}
+}
+
+func TestPictures(t *testing.T) {
+	for _, sample := range []string{press, winch, ""} {
+		c, p := shown(t, sample)
+		for _, dark := range []bool{false, true} {
+			c.SetDark(dark)
+			for size, wh := range map[string][2]float32{"large": {1190, 590}, "small": {930, 480}} {
+				c.Show(p, wh[0], wh[1])
+				c.Look("payback-" + strings.TrimSuffix(sample, ".yaml") + "-" + size + map[bool]string{true: "-dark"}[dark])
+			}
+		}
+		p.scroll.ScrollToBottom()
+		c.Settle(930, 480)
+		c.Look("payback-" + strings.TrimSuffix(sample, ".yaml") + "-bottom")
+		if m := p.Content().MinSize(); m.Width > 900 || m.Height > 480 {
+			t.Errorf("the least size is %v", m)
+		}
+	}
+}
