@@ -225,6 +225,7 @@ func TestRecordedDutyIsReadOnly(t *testing.T) {
 	if !strings.Contains(s.refusal.Text, "log.csv") {
 		t.Errorf("hint %q", s.refusal.Text)
 	}
+	f.look("duty-recorded", 930, 480)
 	// By hand: ∫v dt = 0.1·1 + 0.1/2·1 = 0.15 m; standstill 0.001·0.1 m/s.
 	notes := f.dump()
 	for _, want := range []string{"ends 150\u202fmm from where it began", "standing below 0.10\u202fmm/s, 0.10\u202f% of its highest speed 0.100\u202fm/s"} {

@@ -78,7 +78,8 @@ func (s *Station) build() {
 	s.caption.Truncation = fyne.TextTruncateEllipsis
 	s.steps = widgets.Name(widgets.NewFigure(fyne.NewSize(280, 120), s.draw), "energy.steps")
 	s.steps.Tapped = func(p widgets.Part, _, _ float64) { s.openPart(p) }
-	s.figures = widgets.Name(widgets.NewFigureTable(s.Explain, s.ctx.Local), "energy.figures")
+	s.figures = widgets.NewFigureTable(s.ctx.Palette, s.Explain, s.ctx.Local)
+	widgets.Name(s.figures.Table, "energy.figures")
 	s.table = widgets.Name(widgets.NewTable(fyne.NewSize(260, 110), s.ctx.Palette), "energy.table")
 	s.table.ByRow = true
 	s.table.Selected = func(row, _ int) { s.openLine(row) }
@@ -91,7 +92,8 @@ func (s *Station) build() {
 
 // lay puts the parts together.
 func (s *Station) lay() fyne.CanvasObject {
-	left := container.NewVScroll(widgets.Spaced(container.NewVBox(s.steps, s.figures)))
+	left := container.NewVScroll(widgets.Spaced(container.NewVBox(s.steps, s.figures.Table)))
+	s.figures.In(left)
 	right := container.NewVSplit(s.table, s.paper(container.NewVScroll(s.calc), true))
 	right.Offset = 0.6
 	split := container.NewHSplit(s.paper(left, false), right)

@@ -17,10 +17,12 @@ import (
 type fake struct {
 	*stationtest.Context
 	station station.Station
+	circuit int
+	block   string
 }
 
-// opened shows the station with an audit file that is solved; files lie beside it.
-func opened(t *testing.T, show func(station.Context) station.Station, text string, files map[string]string) *fake {
+// opening shows the station with an audit file that is solved; files lie beside it.
+func opening(t *testing.T, show func(station.Context) station.Station, text string, files map[string]string) *fake {
 	t.Helper()
 	f := &fake{Context: stationtest.New(t, "")}
 	dir := t.TempDir()
@@ -75,10 +77,7 @@ func (f *fake) theme(dark bool, scale float32) {
 func (f *fake) SetClock(t float64) { f.Time = t; f.station.Changed(station.Clock) }
 func (f *fake) SetDuty(i int)      { f.At = i; f.station.Changed(station.Selection | station.Clock) }
 
-// failed is the last error the station showed.
-func (f *fake) failed() error {
-	if n := len(f.Failed); n > 0 {
-		return f.Failed[n-1]
-	}
-	return nil
+func (f *fake) Select(circuit int, block string) {
+	f.circuit, f.block = circuit, block
+	f.station.Changed(station.Selection)
 }

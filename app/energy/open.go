@@ -37,7 +37,15 @@ func (s *Station) lineOf(about opened) int {
 // openLine opens a row of the table.
 func (s *Station) openLine(i int) {
 	if l := s.lines[i]; l.row != nil {
-		s.open(opened{circuit: l.circuit, name: l.row.Name, kind: aRow})
+		s.take(opened{circuit: l.circuit, name: l.row.Name, kind: aRow})
+	}
+}
+
+// take opens what the user chose; the block of a loss is then the one at hand.
+func (s *Station) take(about opened) {
+	s.open(about)
+	if i := s.lineOf(about); i >= 0 && s.lines[i].row.Block != "" {
+		s.ctx.Select(about.circuit, s.lines[i].row.Block)
 	}
 }
 

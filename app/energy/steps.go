@@ -136,6 +136,6 @@ func (s *Station) part(r figures.Region) (widgets.Part, opened) {
 // openPart opens what was clicked.
 func (s *Station) openPart(p widgets.Part) {
 	if about, ok := s.about[p.Name]; ok && p.Click {
-		s.open(about)
+		s.take(about)
 	}
 }

@@ -40,7 +40,7 @@ func (s *Station) unsolved(c *audit.CircuitRun) string {
 // columns are the head of the table.
 func (s *Station) columns() []widgets.Column {
 	u := s.unit().Label()
-	cols := []widgets.Column{{Name: "name", Left: true, Most: 230}, {Name: "to", Head: "to", Left: true}}
+	cols := []widgets.Column{{Name: "name", Left: true, Most: 168}, {Name: "to", Head: "to", Left: true}}
 	if !s.year {
 		cols = append(cols, widgets.Column{Name: "cycle", Head: "a cycle", Unit: u})
 	}

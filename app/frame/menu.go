@@ -48,8 +48,8 @@ func (f *Frame) buildMenu() {
 	m.recent = fyne.NewMenuItem("Open recent", nil)
 	m.recent.ChildMenu = fyne.NewMenu("")
 	m.save = item("Save", key(fyne.KeyS, 0), func() { f.save(nil) })
-	m.undo = item("Undo", key(fyne.KeyZ, 0), func() { f.undoOr(&fyne.ShortcutUndo{}, f.doc.Undo) })
-	m.redo = item("Redo", key(fyne.KeyZ, fyne.KeyModifierShift), func() { f.undoOr(&fyne.ShortcutRedo{}, f.doc.Redo) })
+	m.undo = item("Undo", &fyne.ShortcutUndo{}, func() { f.undoOr(&fyne.ShortcutUndo{}, f.doc.Undo) })
+	m.redo = item("Redo", &fyne.ShortcutRedo{}, func() { f.undoOr(&fyne.ShortcutRedo{}, f.doc.Redo) })
 	quit := item("Quit", key(fyne.KeyQ, 0), f.quit)
 	quit.IsQuit = true
 	file := fyne.NewMenu("File", start,
@@ -158,7 +158,7 @@ func (f *Frame) shortcuts() {
 			f.player.stop()
 		}
 	})
-	f.win.Canvas().AddShortcut(&desktop.CustomShortcut{KeyName: fyne.KeyY, Modifier: fyne.KeyModifierShortcutDefault}, func(fyne.Shortcut) {
+	f.win.Canvas().AddShortcut(&desktop.CustomShortcut{KeyName: fyne.KeyZ, Modifier: fyne.KeyModifierShortcutDefault | fyne.KeyModifierShift}, func(fyne.Shortcut) {
 		f.undoOr(&fyne.ShortcutRedo{}, f.doc.Redo)
 	})
 }

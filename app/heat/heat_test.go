@@ -45,6 +45,9 @@ func TestTemperaturesChangeTheCooler(t *testing.T) {
 		for _, run := range s.Circuits {
 			for _, d := range run.Duties {
 				mean := d.Balance.HeatToOil().Total() / d.Balance.Cycle
+				if mean < 1e-6 {
+					mean = 0 // rounding, in a circuit that is switched off
+				}
 				want := c.Text(mean/(oil-air), units.HeatCapacityRate, 3)
 				if !strings.Contains(text, want) {
 					t.Errorf("oil %s, air %s: %s, %s needs %s; the table is %s", step.oil, step.air, run.Circuit.Name, d.Duty.Name, want, text)

@@ -16,6 +16,7 @@ type costFields struct {
 	circuit                 string
 	content                 fyne.CanvasObject
 	low, likely, high, note *widgets.Field
+	rest                    []fyne.CanvasObject // all but the likely cost, which comes first
 }
 
 // showCosts shows the fields of every proposal.
@@ -63,10 +64,11 @@ func (in *inputs) newCost(i int, name string) *costFields {
 	}
 	c.low, c.likely, c.high = field("low", "Change the low cost"), field("likely", "Change the likely cost"), field("high", "Change the high cost")
 	c.note = field("note", "Change the note on the cost")
+	c.note.Scroll = fyne.ScrollHorizontalOnly
 	title := widget.NewLabel(name)
 	title.Truncation = fyne.TextTruncateEllipsis
-	c.content = container.NewVBox(title, widgets.FieldRow("  low", c.low), widgets.FieldRow("  likely", c.likely),
-		widgets.FieldRow("  high", c.high), widgets.FieldRow("  note", c.note))
+	c.rest = []fyne.CanvasObject{widgets.FieldRow("  low", c.low), widgets.FieldRow("  high", c.high), widgets.FieldRow("  note", c.note)}
+	c.content = container.NewVBox(title, c.rest[0], widgets.FieldRow("  likely", c.likely), c.rest[1], c.rest[2])
 	return c
 }
 
@@ -80,14 +82,14 @@ func (c *costFields) show(ctx station.Context, cost audit.Cost) {
 		field.SetValue(station.Shown(ctx, v, cost.Likely.Unit, units.Money), "")
 	}
 	if !cost.Given {
-		c.likely.SetValue("", "Not given yet; type it, such as 26000 "+currency(ctx).Symbol+". Low and high follow.")
-		c.low.Disable()
-		c.high.Disable()
-		c.note.Disable()
+		c.likely.SetValue("", "Not given yet; type it, such as 26000 "+currency(ctx).Symbol+".)
+		for _, o := range c.rest {
+			o.Hide()
+		}
 		return
 	}
-	c.low.Enable()
-	c.high.Enable()
-	c.note.Enable()
+	for _, o := range c.rest {
+		o.Show()
+	}
 	c.note.SetValue(cost.Note, "")
 }

@@ -43,7 +43,7 @@ func numbered(name string, i int) string {
 
 func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	d := &decision{ctx: ctx}
-	d.title = widget.NewLabelWithStyle("", fyne.TextAlignLeading, fyne.TextStyle{Sum: true})
+	d.title = widget.NewLabelWithStyle("", fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
 	d.title.Wrapping = fyne.TextWrapWord
 	d.verdict, d.warnings = text(numbered("payback.verdict", i)), text(numbered("payback.warnings", i))
 	d.warnings.Importance = widget.DangerImportance

@@ -25,6 +25,7 @@ type inputs struct {
 
 	price, low, high, note *widgets.Field
 	band                   fyne.CanvasObject
+	ofPrice, ofCO2         fyne.CanvasObject // what there is to say of a value, once it is given
 	origin                 *widget.Select
 	credit                 *widget.Check
 	co2, year              *widgets.Field
@@ -44,6 +45,7 @@ func newInputs(ctx station.Context) *inputs {
 	in.price = in.field("payback.price", in.putPrice(""))
 	in.low, in.high = in.field("payback.price.low", in.putPrice(".low")), in.field("payback.price.high", in.putPrice(".high"))
 	in.note = in.field("payback.price.note", in.put("Change the note on the price", "energy.price.note"))
+	in.note.Scroll = fyne.ScrollHorizontalOnly
 	bandNote := text("")
 	in.low.Note, in.high.Note = bandNote, bandNote
 	in.band = widgets.Row("  lies within", container.NewGridWithColumns(2, in.low, in.high), bandNote)
@@ -56,11 +58,12 @@ func newInputs(ctx station.Context) *inputs {
 	in.co2 = in.field("payback.co2", in.putCO2)
 	in.year = in.field("payback.co2.year", in.put("Change the year of the CO2 factor", "energy.co2_year"))
 	in.basis = in.choice("payback.co2.basis", "Change the basis of the CO2 factor", "energy.co2_basis", []string{"location", "market"})
+	in.ofPrice = container.NewVBox(widgets.Row("  it is", in.origin, nil), widgets.FieldRow("  note", in.note))
+	in.ofCO2 = container.NewVBox(widgets.FieldRow("  of the year", in.year), widgets.Row("  basis", in.basis, nil))
 	in.content = container.NewVBox(
 		widgets.Card("Energy", container.NewVBox(
-			widgets.FieldRow("Price of energy", in.price), in.band, widgets.Row("  it is", in.origin, nil),
-			widgets.FieldRow("  note", in.note), in.credit,
-			widgets.FieldRow("CO2 factor", in.co2), widgets.FieldRow("  of the year", in.year), widgets.Row("  basis", in.basis, nil))),
+			widgets.FieldRow("Price of energy", in.price), in.band, in.ofPrice, in.credit,
+			widgets.FieldRow("CO2 factor", in.co2), in.ofCO2)),
 		widget.NewSeparator(),
 		widgets.Card("Hours a year", in.duties),
 		widget.NewSeparator(),
@@ -158,12 +161,10 @@ func (in *inputs) show() {
 	in.credit.SetChecked(f.CreditReturned)
 	if f.HasCO2 {
 		in.co2.SetValue(station.Shown(in.ctx, f.CO2.SI, f.CO2.Unit, units.CO2Factor), said(f.CO2))
-		in.year.Enable()
-		in.basis.Enable()
+		in.ofCO2.Show()
 	} else {
 		in.co2.SetValue("", in.ctx.Local("Not given yet; type one, such as 0.35 kg/kWh."))
-		in.year.Disable()
-		in.basis.Disable()
+		in.ofCO2.Hide()
 	}
 	year := ""
 	if f.CO2Year > 0 {
@@ -180,13 +181,11 @@ func (in *inputs) showPrice(f *audit.File) {
 	if !f.HasPrice {
 		in.price.SetValue("", in.ctx.Local("Not given yet; type what the next unit costs, such as 0.18 "+currency(in.ctx).Symbol+"/kWh."))
 		in.note.SetValue("", "")
-		in.note.Disable()
-		in.origin.Disable()
+		in.ofPrice.Hide()
 		in.band.Hide()
 		return
 	}
-	in.note.Enable()
-	in.origin.Enable()
+	in.ofPrice.Show()
 	v := f.Price
 	in.price.SetValue(station.Shown(in.ctx, v.SI, v.Unit, units.EnergyPrice), "")
 	in.note.SetValue(v.Note, "")

@@ -41,7 +41,7 @@ type editor struct {
 	fitted   bool    // the user has not zoomed or panned since it was fitted
 
 	gesture gesture
-	keys    struct{ shift, space, focus bool }
+	keys    struct{ shift, space, quiet bool } // held; quiet: the focus came without a key
 	hover   hover
 
 	raster *canvas.Raster

@@ -24,15 +24,24 @@ const (
 
 // FocusGained shows the frame of the focus.
 func (e *editor) FocusGained() {
-	e.keys.focus = true
 	e.s.active = e.index
-	e.ring.Show()
-	canvas.Refresh(e.over)
+	if !e.keys.quiet {
+		e.showRing()
+	}
+	e.keys.quiet = false
+}
+
+// showRing shows the frame of the focus: not after a click, but as soon as a key is used.
+func (e *editor) showRing() {
+	if !e.ring.Visible() {
+		e.ring.Show()
+		canvas.Refresh(e.over)
+	}
 }
 
 // FocusLost forgets the keys that were held.
 func (e *editor) FocusLost() {
-	e.keys.focus, e.keys.shift, e.keys.space = false, false, false
+	e.keys.shift, e.keys.space = false, false
 	e.ring.Hide()
 	canvas.Refresh(e.over)
 }
@@ -57,6 +66,7 @@ func (e *editor) held(k fyne.KeyName, down bool) {
 
 // TypedRune takes the letters.
 func (e *editor) TypedRune(r rune) {
+	e.showRing()
 	switch r {
 	case 'f', 'F', '0':
 		e.s.fitAll()
@@ -77,10 +87,15 @@ func (e *editor) zoomMiddle(factor float64) {
 
 // TypedKey takes the keys without a letter.
 func (e *editor) TypedKey(k *fyne.KeyEvent) {
+	e.showRing()
 	switch k.Name {
 	case fyne.KeyEscape:
-		if !e.cancel() {
+		switch {
+		case e.cancel():
+		case len(e.selected) > 0:
 			e.choose("", false)
+		default:
+			e.pass(k)
 		}
 	case fyne.KeyTab:
 		e.nextBlock()
@@ -94,6 +109,15 @@ func (e *editor) TypedKey(k *fyne.KeyEvent) {
 		e.arrow(0, -1)
 	case fyne.KeyDown:
 		e.arrow(0, 1)
+	default:
+		e.pass(k)
+	}
+}
+
+// pass hands a key on to the window, which sees none while a widget has the focus.
+func (e *editor) pass(k *fyne.KeyEvent) {
+	if c := fyne.CurrentApp().Driver().CanvasForObject(e); c != nil && c.OnTypedKey() != nil {
+		c.OnTypedKey()(k)
 	}
 }
 

@@ -98,7 +98,7 @@ func (r *linkRenderer) Layout(size fyne.Size) {
 	r.l.ring.Resize(size)
 }
 
-func (r *linkRenderer) MinSize() fyne.Size { return r.l.text.MinSize().AddWidthHeight(8, 2) }
+func (r *linkRenderer) MinSize() fyne.Size { return r.l.text.MinSize().AddWidthHeight(8, 4) }
 func (r *linkRenderer) Refresh() {
 	r.dress()
 	r.Layout(r.l.Size())

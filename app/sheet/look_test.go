@@ -40,6 +40,30 @@ func TestPages(t *testing.T) {
 	b.picture("scale-200-wide")
 }
 
+func TestFaultyPage(t *testing.T) {
+	b := newBench(t, "quayside-winch.yaml", fyne.NewSize(1200, 590))
+	b.SetClock(20)
+	b.picture("winch-light")
+	for i := range b.doc.File().Circuits[0].Blocks {
+		if block := &b.doc.File().Circuits[0].Blocks[i]; block.Kind == "relief" {
+			b.Select(0, block.ID)
+			break
+		}
+	}
+	for _, r := range b.s.panel.rows {
+		if n, ok := r.(*numberRow); ok {
+			n.field.SetText("2000 bar, or so")
+			n.field.OnSubmitted(n.field.Text)
+			n.toggle()
+			break
+		}
+	}
+	b.theme(false, 1)
+	b.picture("refused-light")
+	b.theme(true, 1)
+	b.picture("refused-dark")
+}
+
 func TestEmptyPage(t *testing.T) {
 	b := newBench(t, "", fyne.NewSize(1200, 590))
 	b.picture("empty")

@@ -46,7 +46,9 @@ var (
 // MouseDown begins a gesture.
 func (e *editor) MouseDown(ev *desktop.MouseEvent) {
 	if c := fyne.CurrentApp().Driver().CanvasForObject(e); c != nil {
+		e.keys.quiet = true
 		c.Focus(e)
+		e.keys.quiet = false
 	}
 	e.s.active = e.index
 	e.hover.hide()
@@ -115,6 +117,7 @@ func (e *editor) MouseUp(*desktop.MouseEvent) {
 func (e *editor) DragEnd() {
 	g := e.gesture
 	e.gesture = gesture{}
+	e.hover.clearGhosts()
 	switch g.kind {
 	case banding:
 		e.endBand(g)
@@ -131,6 +134,7 @@ func (e *editor) cancel() bool {
 	}
 	e.gesture = gesture{kind: cancelled, moved: e.gesture.moved}
 	e.moved = nil
+	e.hover.clearGhosts()
 	e.band.Hide()
 	e.redraw()
 	return true

@@ -15,15 +15,15 @@ func (s *Station) move(e *editor, ids []string, dx, dy float64) {
 		e.redraw()
 		return
 	}
-	at, all := e.places(ids, dx, dy)
+	at, others := e.places(ids, dx, dy)
 	var err error
-	if len(all) == 0 {
+	if len(others) == 0 {
 		err = s.ctx.Doc().Move(e.name, at)
 	} else {
 		// Blocks without a place of their own would be placed anew around the moved
 		// ones: they keep the places they were given.
 		err = s.ctx.Doc().Edit("Move "+strings.Join(ids, ", "), func(f *audit.File) error {
-			for _, list := range []map[string][2]float64{all, at} {
+			for _, list := range []map[string][2]float64{others, at} {
 				for id, p := range list {
 					if err := f.SetAt(e.name, id, p); err != nil {
 						return err
@@ -36,10 +36,6 @@ func (s *Station) move(e *editor, ids []string, dx, dy float64) {
 	if err != nil {
 		e.moved = nil
 		s.ctx.Fail(err)
-		e.redraw()
-		return
-	}
-	if e.moved == nil && all == nil {
 		e.redraw()
 	}
 }

@@ -89,7 +89,7 @@ func (headLine) Layout(objects []fyne.CanvasObject, size fyne.Size) {
 	for i, o := range objects {
 		m := o.MinSize()
 		if i == 2 {
-			o.Move(fyne.NewPos(size.Width-m.Width, (size.Height-m.Height)/2))
+			o.Move(fyne.NewPos(size.Width-m.Width, size.Height-m.Height-2))
 			o.Resize(m)
 			continue
 		}
@@ -167,6 +167,7 @@ type fieldRow struct {
 	*base
 	field *widgets.Field
 	value func() (text, hint, placeholder, unit string)
+	ready bool // what was refused before is back in the field
 }
 
 // newFieldRow makes a row around a field; take hands the text over.
@@ -201,7 +202,7 @@ func (r *fieldRow) fill() {
 		r.unit.Refresh()
 	}
 	r.field.SetValue(text, hint)
-	if !r.field.Bad() {
+	if r.ready && !r.field.Bad() {
 		delete(r.p.drafts, r.target)
 	}
 }
@@ -218,6 +219,7 @@ func (r *fieldRow) keep() {
 
 // restore brings a refused text back with its reason.
 func (r *fieldRow) restore() {
+	r.ready = true
 	if text, ok := r.p.drafts[r.target]; ok {
 		r.field.SetText(text)
 		r.field.OnSubmitted(text)

@@ -90,6 +90,9 @@ func (s *Station) Changed(w station.What) {
 	for _, e := range s.editors {
 		e.redraw()
 	}
+	if w&station.Everything == station.Everything {
+		s.takeFocus()
+	}
 }
 
 // Mend reports a finding that keeps a circuit from being solved or is likely an
@@ -227,18 +230,16 @@ func (s *Station) revealSelected() {
 	s.arrange()
 }
 
-// TypedKey takes keys that no widget has taken, such as from a window without a
-// focused widget.
-func (s *Station) TypedKey(k *fyne.KeyEvent) {
+// takeFocus gives the keys to the sheet worked on last, when the page is shown and
+// nothing else has them: so W, F and the arrows work at once.
+func (s *Station) takeFocus() {
+	w := s.ctx.Window()
 	e := s.editors[s.active]
-	switch k.Name {
-	case fyne.KeyW:
-		s.setWide(!s.wide)
-	case fyne.KeyF:
-		s.fitAll()
-	default:
-		e.TypedKey(k)
+	if w == nil || w.Canvas() == nil || w.Canvas().Focused() != nil || !s.content.Visible() || e.sheet == nil {
+		return
 	}
+	e.keys.quiet = true
+	w.Canvas().Focus(e)
 }
 
 // setWide shows one sheet in full width, or both.

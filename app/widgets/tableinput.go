@@ -203,13 +203,20 @@ func (t *Table) TypedKey(k *fyne.KeyEvent) {
 	case fyne.KeyPageDown:
 		t.step(page, 0)
 	case fyne.KeyHome:
-		t.step(-t.rows, 0)
+		t.jump(t.next(-1, 1))
 	case fyne.KeyEnd:
-		t.step(t.rows, 0)
+		t.jump(t.next(t.rows, -1))
 	case fyne.KeyReturn, fyne.KeyEnter, fyne.KeyF2:
 		t.enter()
 	case fyne.KeyEscape:
 		t.giveUp()
+	}
+}
+
+// jump selects a row and keeps the column.
+func (t *Table) jump(row int) {
+	if row >= 0 {
+		t.choose(row, t.selCol)
 	}
 }
 

@@ -16,7 +16,7 @@ type blockHeat struct {
 }
 
 // smallHeat is the share of a circuit's heat below which blocks are shown together.
-const smallHeat = 0.002
+const smallHeat = 0.005
 
 // HeatLane stacks the heat that a circuit puts into the oil over one cycle by block, in
 // unit u: the blocks with the most heat each by itself, the largest lowest, the others

@@ -1,0 +1,137 @@
+// Package report is the station for what leaves the program: the pages as they will
+// print, and the report and the results as files.
+package report
+
+import (
+	"fmt"
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/audit/pdf"
+)
+
+// Report is the station.
+type Report struct {
+	ctx      station.Context
+	content  fyne.CanvasObject
+	fields   []textField
+	sections map[pdf.Section]*widget.Check
+	preview  *preview
+	saver    *saver
+}
+
+// textField is a text of the audit file.
+type textField struct {
+	field *widgets.Field
+	get   func(*audit.File) string
+}
+
+// New makes the station.
+func New(ctx station.Context) station.Station {
+	r := &Report{ctx: ctx, sections: map[pdf.Section]*widget.Check{}}
+	r.preview = newPreview(ctx, r.options)
+	r.saver = newSaver(ctx, r.options)
+	head := container.NewVBox(
+		r.text("Title", "report.title", "title", func(f *audit.File) string { return f.Title }),
+		r.text("Customer", "report.customer", "site.customer", func(f *audit.File) string { return f.Site.Customer }),
+		r.text("Site", "report.site", "site.name", func(f *audit.File) string { return f.Site.Name }),
+		r.text("Author", "report.author", "site.author", func(f *audit.File) string { return f.Site.Author }),
+	)
+	parts := container.NewVBox()
+	for _, s := range pdf.Sections() {
+		check := widgets.Name(widget.NewCheck(string(s), nil), "report.section."+slug(string(s)))
+		check.Checked = true
+		check.OnChanged = func(bool) { r.preview.load() }
+		r.sections[s] = check
+		parts.Add(check)
+	}
+	always := widget.NewLabel("Cautions and limits of use are always printed.")
+	always.Wrapping = fyne.TextWrapWord
+	always.Importance = widget.LowImportance
+	parts.Add(always)
+	left := container.NewVScroll(widgets.Spaced(container.NewVBox(widgets.Card("First page", head), widget.NewSeparator(), widgets.Card("Sections", parts))))
+	side := container.NewBorder(nil, widgets.Spaced(r.saver.content), nil, nil, left)
+	split := container.NewHSplit(side, widgets.Spaced(r.preview.content))
+	split.Offset = 0.32
+	r.content = split
+	return r
+}
+
+// slug is a name for scripts: "where-the-energy-goes".
+func slug(s string) string {
+	return strings.ReplaceAll(strings.ToLower(s), " ", "-")
+}
+
+func (r *Report) text(title, name, target string, get func(*audit.File) string) fyne.CanvasObject {
+	f := widgets.NewField("", func(text string) error {
+		err := r.ctx.Doc().Edit("Change the "+strings.ToLower(title), func(f *audit.File) error { return f.Put(target, text) })
+		if err == nil {
+			r.show()
+		}
+		return err
+	})
+	f.Scroll = fyne.ScrollHorizontalOnly
+	r.fields = append(r.fields, textField{widgets.Name(f, name), get})
+	return widgets.FieldRow(title, f)
+}
+
+func (r *Report) show() {
+	file := r.ctx.Doc().File()
+	for _, f := range r.fields {
+		f.field.SetValue(f.get(file), "")
+	}
+}
+
+// options are those of the report as it is set up here. The names come from the audit file.
+func (r *Report) options() pdf.Options {
+	opt := pdf.Options{System: r.ctx.System(), Date: today()}
+	for _, s := range pdf.Sections() {
+		if !r.sections[s].Checked {
+			opt.Without = append(opt.Without, s)
+		}
+	}
+	return opt
+}
+
+// Name is the word on the rail.
+func (r *Report) Name() string { return "Report" }
+
+// Content is the station's page.
+func (r *Report) Content() fyne.CanvasObject { return r.content }
+
+// Mend reports nothing: a report can always be printed as far as there are results.
+func (r *Report) Mend() bool { return false }
+
+// Help is the short help.
+func (r *Report) Help() string {
+	return "The pages are drawn as they will print. Leave sections out by their switches; the cautions and limits of use stay in. Title, customer, site and author " +
+		"belong to the audit and are saved with it.\n\n" +
+		"Save PDF… writes the report, with the figures of all circuits as they are now. Save JSON… writes every result as numbers in SI units, for other programs. " +
+		"Save CSV… writes a table of every time step for each circuit and duty into a folder; for that the audit is solved once more, which can be cancelled.\n\n" +
+		"Files are put in place when they are whole. When something fails, the message says what and where, and the audit stays open as it was."
+}
+
+// Changed shows anew what changed.
+func (r *Report) Changed(w station.What) {
+	if w.Has(station.Model) {
+		r.show()
+	}
+	if w.Has(station.Solution | station.Settings | station.Model) {
+		r.saver.refresh()
+		r.preview.load()
+	}
+}
+
+// plural writes "1 page", "3 pages".
+func plural(n int, what string) string {
+	if n == 1 {
+		return "1 " + what
+	}
+	return fmt.Sprintf("%d %ss", n, what)
+}

@@ -1,0 +1,143 @@
+package report
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"sync"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/dialog"
+	"fyne.io/fyne/v2/storage"
+
+	"barlitre/audit"
+)
+
+// saveCSV asks for a folder and writes the tables of time steps into it.
+func (s *saver) saveCSV() {
+	base := s.base() + "-"
+	do := func(folder string) {
+		s.work("the tables", folder, func(ctx context.Context, progress func(int, int)) error {
+			return writeTables(ctx, s.ctx.Doc().File(), folder, base, progress)
+		})
+	}
+	if dir := os.Getenv(saveDirVariable); dir != "" {
+		do(dir)
+		return
+	}
+	d := dialog.NewFolderOpen(func(u fyne.ListableURI, err error) {
+		switch {
+		case err != nil:
+			s.ctx.Fail(fmt.Errorf("save the tables: %w; nothing was written, and the audit is still open here", err))
+		case u != nil:
+			s.askReplace(u.Path(), base, func() { do(u.Path()) })
+		}
+	}, s.ctx.Window())
+	s.ask(d)
+}
+
+// askReplace asks before tables that are there already are replaced.
+func (s *saver) askReplace(folder, base string, then func()) {
+	there := existing(s.ctx.Doc().File(), folder, base)
+	if len(there) == 0 {
+		then()
+		return
+	}
+	text := fmt.Sprintf("%s has %s of that name, such as\n%s", folder, plural(len(there), "table"), there[0])
+	d := dialog.NewConfirm("Replace the tables?", text, func(yes bool) {
+		if yes {
+			then()
+		}
+	}, s.ctx.Window())
+	d.SetConfirmText("Replace")
+	d.SetDismissText("Keep")
+	d.Show()
+}
+
+// existing lists the tables of an audit that are in a folder.
+func existing(f *audit.File, folder, base string) []string {
+	var out []string
+	for i, c := range f.Circuits {
+		for j, d := range f.Duties {
+			name := base + audit.TableName(i+1, c.Name, j+1, d.Name)
+			if _, err := os.Lstat(filepath.Join(folder, name)); err == nil {
+				out = append(out, name)
+			}
+		}
+	}
+	return out
+}
+
+// writeTables solves the audit once more and writes every time step. The tables are
+// written into a folder of their own first and moved when all are whole.
+func writeTables(ctx context.Context, f *audit.File, folder, base string, progress func(int, int)) (err error) {
+	beside, err := os.MkdirTemp(folder, ".barlitre-*")
+	if err != nil {
+		return err
+	}
+	defer func() { err = errors.Join(err, os.RemoveAll(beside)) }()
+	var mu sync.Mutex
+	var names []string
+	_, err = audit.Solve(ctx, f, audit.Options{Progress: progress, CSV: func(name string) (io.WriteCloser, error) {
+		mu.Lock()
+		defer mu.Unlock()
+		names = append(names, name)
+		return os.Create(filepath.Join(beside, name))
+	}})
+	switch {
+	case err != nil:
+		return err
+	case len(names) == 0:
+		return errors.New("no circuit could be solved, so there are no time steps to write; see the findings under Circuit")
+	}
+	for i, name := range names {
+		if err := os.Rename(filepath.Join(beside, name), filepath.Join(folder, base+name)); err != nil {
+			if i > 0 {
+				return &partError{fmt.Errorf("%d of %s are in place, %s is not: %w", i, plural(len(names), "table"), base+name, plain(err))}
+			}
+			return err
+		}
+	}
+	return nil
+}
+
+// partError is of an action of which a part was done.
+type partError struct{ error }
+
+// writeFile writes a file so that it is there whole, or as it was.
+func writeFile(path string, write func(io.Writer) error) (err error) {
+	tmp, err := os.CreateTemp(filepath.Dir(path), ".barlitre-*")
+	if err != nil {
+		return err
+	}
+	defer func() {
+		if err != nil {
+			os.Remove(tmp.Name())
+		}
+	}()
+	err = errors.Join(write(tmp), tmp.Chmod(0o644), tmp.Sync(), tmp.Close())
+	if err != nil {
+		return err
+	}
+	return os.Rename(tmp.Name(), path)
+}
+
+// plain takes names of temporary files out of an error: the sentence around it names the place.
+func plain(err error) error {
+	var at *os.PathError
+	if errors.As(err, &at) {
+		return at.Err
+	}
+	var link *os.LinkError
+	if errors.As(err, &link) {
+		return link.Err
+	}
+	return err
+}
+
+func folderURI(dir string) (fyne.ListableURI, error) {
+	return storage.ListerForURI(storage.NewFileURI(dir))
+}

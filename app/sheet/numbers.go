@@ -1,0 +1,287 @@
+package sheet
+
+import (
+	"errors"
+	"math"
+	"strings"
+
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/widgets"
+	"barlitre/circuit"
+	"barlitre/machines/units"
+)
+
+// numberRow is the row of a quantity: its number in the unit it was given in, where
+// it comes from, and behind a link its low, high and note.
+type numberRow struct {
+	*fieldRow
+	param   *circuit.Param
+	circuit string
+	block   string
+	origin  *widget.Select
+	more    *link
+	extra   []*fieldRow
+	about   *widget.Label
+	filling bool
+}
+
+func (r *numberRow) key() string { return r.param.Key }
+
+func newNumberRow(p *panel, circuitName, block string, q *circuit.Param, target string) *numberRow {
+	r := &numberRow{param: q, circuit: circuitName, block: block}
+	r.fieldRow = newFieldRow(p, q.Title, "field."+q.Key, target, r.take)
+	r.value = r.shown
+	r.origin = widget.NewSelect(words(circuit.Origins), r.setOrigin)
+	r.origin.PlaceHolder = "origin?"
+	widgets.Name(r.origin, "field."+q.Key+".origin")
+	r.more = newLink("more", r.toggle)
+	widgets.Name(r.more, "field."+q.Key+".more")
+	r.head.Add(r.more)
+	r.stack(container.New(columns{0.5, 0.5}, r.field, r.origin))
+	return r
+}
+
+func words(list []circuit.Origin) []string {
+	var out []string
+	for _, o := range list {
+		out = append(out, string(o))
+	}
+	return out
+}
+
+// now is the value in the file; given is false for a default or none.
+func (r *numberRow) now() (v circuit.Value, given bool) {
+	b := r.p.block(r.circuit, r.block)
+	if b == nil {
+		return circuit.Value{}, false
+	}
+	v, given = b.Values[r.param.Key]
+	return v, given
+}
+
+// unitNow is the unit the number stands in: its own, else that of the default or of
+// the user.
+func (r *numberRow) unitNow() units.Unit {
+	if v, given := r.now(); given && v.Unit.Factor != 0 {
+		return v.Unit
+	}
+	sys := r.p.s.ctx.System()
+	if r.param.Default != "" && sys == units.Metric {
+		if _, u, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
+			return u
+		}
+	}
+	return units.Preferred(r.param.Dim, sys)
+}
+
+// number is a value in a unit without the unit, as typed.
+func (r *numberRow) number(si float64, u units.Unit) string {
+	if math.IsNaN(si) || math.IsInf(si, 0) {
+		return ""
+	}
+	text := strings.TrimSuffix(units.FileText(si, u), " "+u.Symbol)
+	return r.p.s.ctx.Local(text)
+}
+
+// shown is what stands in the row.
+func (r *numberRow) shown() (text, hint, placeholder, unit string) {
+	u := r.unitNow()
+	v, given := r.now()
+	r.fillOrigin(v, given)
+	if given {
+		return r.number(v.SI, u), r.givenHint(v, u), "", u.Label()
+	}
+	if r.param.Default == "" {
+		return "", "not given; " + r.rangeText(u), "", u.Label()
+	}
+	if si, _, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
+		placeholder = r.number(si, u)
+	}
+	return "", "default" + reason(r.param) + "; " + r.rangeText(u), placeholder, u.Label()
+}
+
+// givenHint is what is known of a value besides, and what it may be.
+func (r *numberRow) givenHint(v circuit.Value, u units.Unit) string {
+	var notes []string
+	if low := r.number(v.Low, u); low != "" {
+		notes = append(notes, "low "+low)
+	}
+	if high := r.number(v.High, u); high != "" {
+		notes = append(notes, "high "+high)
+	}
+	notes = append(notes, r.rangeText(u))
+	if v.Note != "" {
+		notes = append(notes, v.Note)
+	}
+	return strings.Join(notes, " · ")
+}
+
+// rangeText says what the parameter may be, in the unit of the row.
+func (r *numberRow) rangeText(u units.Unit) string {
+	q := r.param
+	show := func(x float64) string { return r.p.s.ctx.Local(plain(units.Number(u.FromSI(x), 4))) }
+	low, high := "any", ""
+	switch {
+	case q.Above:
+		low = "above " + show(q.Min)
+	case !math.IsInf(q.Min, 0):
+		low = "from " + show(q.Min)
+	}
+	if !math.IsInf(q.Max, 0) {
+		high = " to " + show(q.Max)
+	}
+	return low + high
+}
+
+// plain drops zeros at the end of a decimal number.
+func plain(text string) string {
+	mantissa, exp, has := strings.Cut(text, "e")
+	if strings.Contains(mantissa, ".") {
+		mantissa = strings.TrimRight(strings.TrimRight(mantissa, "0"), ".")
+	}
+	if has {
+		return mantissa + "e" + exp
+	}
+	return mantissa
+}
+
+// fillOrigin shows where the value comes from; a default has an origin of its own,
+// which cannot be changed.
+func (r *numberRow) fillOrigin(v circuit.Value, given bool) {
+	if r.origin == nil {
+		return
+	}
+	r.filling = true
+	defer func() { r.filling = false }()
+	origin := v.Origin
+	if !given {
+		origin = r.param.Origin
+	}
+	if r.origin.Selected != string(origin) {
+		r.origin.Selected = string(origin)
+		r.origin.Refresh()
+	}
+	if given == r.origin.Disabled() {
+		if given {
+			r.origin.Enable()
+		} else {
+			r.origin.Disable()
+		}
+	}
+}
+
+var errEmpty = errors.New("the field is empty; write a value, or press Escape to bring the old one back")
+
+// take reads what was typed, in any unit of the quantity, and hands it to the
+// document as a file writes it.
+func (r *numberRow) take(text string) error {
+	_, given := r.now()
+	if text == "" {
+		if given {
+			return errEmpty
+		}
+		return nil
+	}
+	si, u, err := units.ParseLoose(text, r.param.Dim, r.unitNow())
+	if err != nil {
+		return err
+	}
+	if bad := r.param.CheckValue(circuit.Value{SI: si, Unit: u, Low: math.NaN(), High: math.NaN()}); bad != "" {
+		return errors.New(r.p.s.ctx.Local(lower(r.param.Title) + " " + bad))
+	}
+	return r.p.s.ctx.Doc().Set(r.target, units.FileText(si, u))
+}
+
+func (r *numberRow) setOrigin(text string) {
+	if r.filling || text == "" {
+		return
+	}
+	if err := r.p.s.ctx.Doc().Set(r.target+".origin", text); err != nil {
+		r.say(err.Error(), true)
+	}
+	r.fill()
+	r.p.relay()
+}
+
+// toggle shows or hides low, high and note.
+func (r *numberRow) toggle() {
+	if r.extra != nil {
+		for _, x := range r.extra {
+			r.content.Remove(x.content)
+		}
+		r.content.Remove(r.about)
+		r.extra = nil
+		r.more.SetText("more")
+	} else {
+		r.about = r.p.label(widget.LowImportance)
+		r.about.SetText(upper(r.param.Text))
+		r.content.Add(r.about)
+		r.extra = []*fieldRow{r.bound("low", func(v circuit.Value) float64 { return v.Low }), r.bound("high", func(v circuit.Value) float64 { return v.High }), r.noteRow()}
+		for _, x := range r.extra {
+			x.fill()
+			r.content.Add(x.content)
+		}
+		r.more.SetText("less")
+	}
+	r.p.relay()
+}
+
+// bound is the row of the lowest or highest value it may have.
+func (r *numberRow) bound(which string, of func(circuit.Value) float64) *fieldRow {
+	target := r.target + "." + which
+	x := newFieldRow(r.p, r.param.Title+", "+which, "field."+r.param.Key+"."+which, target, func(text string) error {
+		if text == "" {
+			if v, _ := r.now(); !math.IsNaN(of(v)) {
+				return errEmpty
+			}
+			return nil
+		}
+		si, u, err := units.ParseLoose(text, r.param.Dim, r.unitNow())
+		if err != nil {
+			return err
+		}
+		return r.p.s.ctx.Doc().Set(target, units.FileText(si, u))
+	})
+	x.value = func() (string, string, string, string) {
+		v, given := r.now()
+		if !given {
+			return "", "set the value first", "", r.unitNow().Label()
+		}
+		return r.number(of(v), r.unitNow()), "", "", r.unitNow().Label()
+	}
+	x.stack(x.field)
+	return x
+}
+
+func (r *numberRow) noteRow() *fieldRow {
+	target := r.target + ".note"
+	x := newFieldRow(r.p, r.param.Title+", note", "field."+r.param.Key+".note", target, func(text string) error {
+		if v, _ := r.now(); text == "" && v.Note == "" {
+			return nil
+		}
+		return r.p.s.ctx.Doc().Set(target, text)
+	})
+	x.value = func() (string, string, string, string) {
+		v, given := r.now()
+		return v.Note, pick(given, "", "set the value first"), "", ""
+	}
+	x.field.Scroll = container.ScrollHorizontalOnly
+	x.stack(x.field)
+	return x
+}
+
+func (r *numberRow) fill() {
+	r.fieldRow.fill()
+	for _, x := range r.extra {
+		x.fill()
+	}
+}
+
+func (r *numberRow) keep() {
+	r.fieldRow.keep()
+	for _, x := range r.extra {
+		x.keep()
+	}
+}
