@@ -55,7 +55,7 @@ func TestExitCodes(t *testing.T) {
 	}{
 		{"no command", nil, exitUnreadable, "barlitre audit"},
 		{"help", []string{"help"}, exitOK, "barlitre blocks"},
-		{"unknown command", []string{"simulate"}, exitUnreadable, `no command "simulate"`},
+		{"unknown command", []string{"simulate"}, exitUnreadable, `no file "simulate"`},
 		{"check a sample", []string{"check", press, winch}, exitOK, "can be solved"},
 		{"check a faulty file", []string{"check", noRest}, exitUnsolvable, "cannot be solved"},
 		{"check a missing file", []string{"check", missing}, exitUnreadable, "none.yaml"},
@@ -187,8 +187,8 @@ func TestSetChangesTheResult(t *testing.T) {
 		set  string
 		more bool
 	}{
-		{"As found/RV1.set=200 bar", false},
-		{"As found/RV1.set=240 bar", true},
+		{"As found/RV1.crack=200 bar", false},
+		{"As found/RV1.crack=240 bar", true},
 		{"As found/M1.efficiency=0.85", true},
 		{"As found/P1.friction=0.01", false},
 		{"oil.temperature=35 C", true}, // thicker oil

@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"slices"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"barlitre/circuit"
 	"barlitre/machines/units"
@@ -50,12 +52,27 @@ func (s *Solution) Cautions() []CautionText {
 		own := circuitCautions(c)
 		for _, f := range c.Findings {
 			if f.Level == circuit.Caution && !slices.Contains(own, f) {
-				out = append(out, CautionText{Circuit: f.Circuit, Block: f.Block, Topic: "As drawn", Text: f.Text})
+				out = append(out, CautionText{Circuit: f.Circuit, Block: f.Block, Topic: "As drawn", Text: sentence(f)})
 			}
 		}
 		out = append(out, c.cautions()...)
 	}
 	return out
+}
+
+// sentence writes a finding as a caution does: without the block, which stands before
+// the topic already, with a capital and a full stop.
+func sentence(f circuit.Finding) string {
+	text := strings.TrimSpace(strings.TrimPrefix(f.Text, f.Block+": "))
+	if text == "" {
+		return ""
+	}
+	first, n := utf8.DecodeRuneInString(text)
+	text = string(unicode.ToUpper(first)) + text[n:]
+	if strings.ContainsAny(text[len(text)-1:], ".!?") {
+		return text
+	}
+	return text + "."
 }
 
 // circuitCautions turns a circuit's cautions into findings.

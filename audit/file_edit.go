@@ -73,15 +73,25 @@ func (f *File) Set(target, quantity string) error {
 	return f.change(target, splices, func(g *File) bool { return g.holds(target, quantity) })
 }
 
+// bandDim has the quantities beside those of blocks that may have low and high.
+var bandDim = map[string]units.Dim{
+	"temperature": units.Temperature, "density": units.Density, "viscosity": units.DynamicViscosity,
+	"price": units.EnergyPrice, "co2": units.CO2Factor,
+}
+
 // moveBand takes low and high along when a value leaves them: they said how sure
-// the old value was, and keep that share of the new one. What is wrong with a
+// the old value was, and keep that share of the new one (for temperatures: that
+// distance). What is wrong with a
 // value is said when the edited text is read.
 func (f *File) moveBand(src *source, p place, quantity string) ([]splice, error) {
 	n := child(p.mapping, p.key)
-	if p.kind == nil || p.attribute != "" || n == nil || n.Kind != yaml.MappingNode || p.kind.Param(p.key) == nil {
+	dim, known := bandDim[p.key]
+	if p.kind != nil && p.kind.Param(p.key) != nil {
+		dim, known = p.kind.Param(p.key).Dim, true
+	}
+	if p.attribute != "" || n == nil || n.Kind != yaml.MappingNode || !known {
 		return nil, nil
 	}
-	dim := p.kind.Param(p.key).Dim
 	read := func(key string, u units.Unit) (float64, units.Unit, bool) {
 		v := child(n, key)
 		if v == nil {
@@ -107,7 +117,11 @@ func (f *File) moveBand(src *source, p place, quantity string) ([]splice, error)
 		}
 		outside = outside || (i == 0 && si < end) || (i == 1 && si > end)
 		// Four digits are as sure as such an end is.
-		x, _ := strconv.ParseFloat(strconv.FormatFloat(unit.FromSI(end*si/old), 'g', 4, 64), 64)
+		moved := end * si / old
+		if dim == units.Temperature {
+			moved = end + si - old
+		}
+		x, _ := strconv.ParseFloat(strconv.FormatFloat(unit.FromSI(moved), 'g', 4, 64), 64)
 		sp, err := src.putBeside(p.mapping, p.key, key, encode(units.FileText(unit.ToSI(x), unit), false))
 		if err != nil {
 			return nil, err

@@ -23,7 +23,7 @@ const besidePress = ".press.yaml" + autosaveExt
 func TestAutosaveComesAndGoes(t *testing.T) {
 	b := newBench(t, quick, Options{AutosaveAfter: 5 * time.Millisecond})
 	path := b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	b.events.wait(t, Autosaved, b.Revision())
 	if got := exists(t, b.dir); !slices.Equal(got, []string{besidePress, "press.yaml"}) {
 		t.Fatalf("got %v", got)
@@ -43,7 +43,7 @@ func TestAutosaveComesAndGoes(t *testing.T) {
 		time.Sleep(time.Millisecond)
 	}
 	for name, end := range map[string]func() error{"save": b.Save, "abandon": b.Abandon} {
-		_ = b.Set("As found/RV1.set", "232 bar")
+		_ = b.Set("As found/RV1.crack", "232 bar")
 		b.settled(t)
 		check(t, end())
 		if got := exists(t, b.dir); len(got) != 1 || len(exists(t, b.recoveryFolder())) != 0 {
@@ -59,7 +59,7 @@ func TestAutosaveComesAndGoes(t *testing.T) {
 func TestCloseKeepsUnsaved(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	check(t, b.Close())
 	c := newBench(t, quick, Options{Config: b.config})
 	if got := c.Recoverable(); len(got) != 1 || got[0].Name != "press.yaml" {
@@ -131,7 +131,7 @@ func TestRecover(t *testing.T) {
 func TestDiscard(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	b.settled(t)
 	b.crash(t)
 	c := newBench(t, quick, Options{Config: b.config})
@@ -150,14 +150,14 @@ func TestDiscard(t *testing.T) {
 func TestAutosavesDoNotCollide(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	path := b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	b.settled(t)
 	first := string(b.File().Bytes())
 	b.crash(t)
 	c := newBench(t, quick, Options{Config: b.config})
 	_, err := c.Open(path)
 	check(t, err)
-	check(t, c.Set("As found/RV1.set", "232 bar"))
+	check(t, c.Set("As found/RV1.crack", "232 bar"))
 	c.settled(t)
 	second := string(c.File().Bytes())
 	d := newBench(t, quick, Options{Config: b.config})
@@ -182,7 +182,7 @@ func TestAutosavesDoNotCollide(t *testing.T) {
 func TestRecoverableLeavesAlone(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	path := b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	b.settled(t)
 	autosave := b.session.autosave
 	b.crash(t)
@@ -228,7 +228,7 @@ func TestRecoverWithoutFile(t *testing.T) {
 		t.Run(name, func(t *testing.T) {
 			b := newBench(t, quick, Options{})
 			path := b.openPress(t)
-			check(t, b.Set("As found/RV1.set", "231 bar"))
+			check(t, b.Set("As found/RV1.crack", "231 bar"))
 			b.settled(t)
 			text := string(b.File().Bytes())
 			b.crash(t)
@@ -251,7 +251,7 @@ func TestAutosaveFails(t *testing.T) {
 	check(t, os.WriteFile(config, nil, 0o644))
 	b := newBench(t, quick, Options{Config: config, AutosaveAfter: time.Millisecond})
 	b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	e := b.events.wait(t, AutosaveFailed, b.Revision())
 	if e.Err == nil || !strings.Contains(e.Err.Error(), config) {
 		t.Errorf("told %v", e.Err)

@@ -39,7 +39,7 @@ func TestEditUndoRedoSave(t *testing.T) {
 	path := b.openPress(t)
 	old := readFile(t, path)
 	texts := []string{old}
-	for _, set := range [][2]string{{"As found/RV1.set", "231 bar"}, {"As found/RV1.set.origin", "assumed"}, {"As found/note", "Käufer: µ, \"x\""}, {"oil.temperature", "51 C"}} {
+	for _, set := range [][2]string{{"As found/RV1.crack", "231 bar"}, {"As found/RV1.set.origin", "assumed"}, {"As found/note", "Käufer: µ, \"x\""}, {"oil.temperature", "51 C"}} {
 		revision := b.Revision()
 		check(t, b.Set(set[0], set[1]))
 		if b.Revision() != revision+1 || !b.Dirty() || b.Title() != "press.yaml*" {
@@ -121,7 +121,7 @@ func TestUndoRandom(t *testing.T) {
 func randomEdit(d *Document, r *rand.Rand) error {
 	switch r.Intn(4) {
 	case 0:
-		return d.Set("As found/RV1.set", fmt.Sprintf("%d bar", 226+r.Intn(9)))
+		return d.Set("As found/RV1.crack", fmt.Sprintf("%d bar", 226+r.Intn(9)))
 	case 1:
 		return d.SetPoint("baling", "ram.load", 5, fmt.Sprintf("%d kN", 60+r.Intn(40)))
 	case 2:
@@ -138,7 +138,7 @@ func TestRefusedEditChangesNothing(t *testing.T) {
 	text, revision := string(b.File().Bytes()), b.Revision()
 	boom := errors.New("boom")
 	for name, err := range map[string]error{
-		"unit":    b.Set("As found/RV1.set", "5 m"),
+		"unit":    b.Set("As found/RV1.crack", "5 m"),
 		"error":   b.Edit("x", func(f *audit.File) error { return errors.Join(f.Set("As found/note", "two"), boom) }),
 		"panic":   b.Edit("x", func(f *audit.File) error { _ = f.Set("As found/note", "two"); panic("oh") }),
 		"one bad": b.Move("As found", map[string][2]float64{"P1": {1, 2}, "X9": {1, 2}}),
@@ -162,7 +162,7 @@ func TestFileIsASnapshot(t *testing.T) {
 	b.openPress(t)
 	f := b.File()
 	text, set := string(f.Bytes()), f.Circuit("As found").Block("RV1").Values["set"].Text
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	if string(f.Bytes()) != text || f.Circuit("As found").Block("RV1").Values["set"].Text != set {
 		t.Error("an edit changed a file that was handed out")
 	}
@@ -190,7 +190,7 @@ func TestMerging(t *testing.T) {
 		}
 	}
 	drag := func(x float64) { t.Helper(); check(t, b.Move("As found", map[string][2]float64{"RV1": {x, 34}})) }
-	step := func(bar int) { t.Helper(); check(t, b.Step("As found/RV1.set", fmt.Sprintf("%d bar", bar))) }
+	step := func(bar int) { t.Helper(); check(t, b.Step("As found/RV1.crack", fmt.Sprintf("%d bar", bar))) }
 
 	for x := range 10 {
 		drag(float64(x))
@@ -228,8 +228,8 @@ func TestMerging(t *testing.T) {
 	step(230) // back: nothing to undo
 	undone()
 	drag(3)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
-	check(t, b.Set("As found/RV1.set", "232 bar")) // Set does not merge
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "232 bar")) // Set does not merge
 	undone("Change RV1: set to (As found)", "Change RV1: set to (As found)", "Move RV1")
 }
 
@@ -257,7 +257,7 @@ func TestNames(t *testing.T) {
 			t.Errorf("%s: %q, want %q", target, got, want)
 		}
 	}
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	check(t, b.SetPoint("baling", "ram.load", 5, "80 kN"))
 	if got := b.UndoName(); got != "Change ram.load of baling, row 6" {
 		t.Errorf("undo name %q", got)
@@ -266,7 +266,7 @@ func TestNames(t *testing.T) {
 	if b.UndoName() != "Change RV1: set to (As found)" || b.RedoName() != "Change ram.load of baling, row 6" {
 		t.Errorf("undo %q, redo %q", b.UndoName(), b.RedoName())
 	}
-	check(t, b.Set("As found/RV1.set", "232 bar"))
+	check(t, b.Set("As found/RV1.crack", "232 bar"))
 	if b.RedoName() != "" {
 		t.Error("redo outlives an edit")
 	}
@@ -303,7 +303,7 @@ func TestOpenWithFaults(t *testing.T) {
 func TestSampleIsUntitled(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	check(t, b.OpenSample(press))
 	if b.Path() != "" || b.File().Path != "" || b.Dirty() || b.Title() != "baling-press (sample)" || b.UndoName() != "" {
 		t.Errorf("path %q, title %q, undo %q", b.Path(), b.Title(), b.UndoName())
@@ -323,7 +323,7 @@ func TestClosed(t *testing.T) {
 	check(t, b.Close())
 	check(t, b.Close())
 	_, err := b.Open(path)
-	for _, err := range []error{err, b.Set("As found/RV1.set", "231 bar"), b.OpenEmpty()} {
+	for _, err := range []error{err, b.Set("As found/RV1.crack", "231 bar"), b.OpenEmpty()} {
 		if !errors.Is(err, errClosed) {
 			t.Errorf("after close: %v", err)
 		}

@@ -15,7 +15,7 @@ func TestSaveReadOnlyFolder(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	path := b.openPress(t)
 	old := readFile(t, path)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	for _, dir := range []string{filepath.Dir(b.dir), filepath.Dir(b.config), b.dir} {
 		check(t, os.Chmod(dir, 0o755))
 	}

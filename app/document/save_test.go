@@ -38,7 +38,7 @@ func TestSaveRefused(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	path := b.openPress(t)
 	old := readFile(t, path)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 
 	gone := filepath.Join(b.dir, "gone", "deep", "press.yaml")
 	refused(t, b, b.SaveAs(gone), gone, "the folder "+filepath.Dir(gone)+" is not there")
@@ -73,7 +73,7 @@ func TestSaveRefused(t *testing.T) {
 func TestSaveFolderGone(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	path := b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	check(t, os.RemoveAll(b.dir))
 	refused(t, b, b.Save(), path, "is not there", b.recoveryFolder())
 	other := t.TempDir()
@@ -86,7 +86,7 @@ func TestSaveFolderGone(t *testing.T) {
 func TestSaveAfterChangeOutside(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	path := b.openPress(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	other := readFile(t, path) + "# by hand\n"
 	check(t, os.WriteFile(path, []byte(other), 0o644))
 	err := b.Save()
@@ -98,7 +98,7 @@ func TestSaveAfterChangeOutside(t *testing.T) {
 	if readFile(t, path) != string(b.File().Bytes()) || b.Dirty() {
 		t.Error("not replaced")
 	}
-	check(t, b.Set("As found/RV1.set", "232 bar"))
+	check(t, b.Set("As found/RV1.crack", "232 bar"))
 	check(t, os.Remove(path)) // gone is no reason not to save
 	check(t, b.Save())
 }
@@ -106,14 +106,14 @@ func TestSaveAfterChangeOutside(t *testing.T) {
 func TestSaveAs(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	check(t, b.OpenSample(press))
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	revision := b.Revision()
 	check(t, b.SaveAs(filepath.Join(b.dir, "v1.2")))
 	want := filepath.Join(b.dir, "v1.2.yaml")
 	if b.Path() != want || b.File().Path != want || b.Title() != "v1.2.yaml" || b.Revision() != revision {
 		t.Errorf("path %s, title %s, revision %d", b.Path(), b.Title(), b.Revision())
 	}
-	check(t, b.Set("As found/RV1.set", "232 bar"))
+	check(t, b.Set("As found/RV1.crack", "232 bar"))
 	if err := b.SaveAs(filepath.Join(b.dir, "v1.2")); !errors.Is(err, ErrExists) || !b.Dirty() {
 		t.Errorf("replaced a file that was not named: %v", err)
 	}
@@ -151,14 +151,14 @@ func recorded(t *testing.T) (b *bench, path string) {
 func TestSaveAsTakesRecordingsAlong(t *testing.T) {
 	b, _ := recorded(t)
 	csv := filepath.Join(b.dir, "logs", "day.csv")
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	revision, to := b.Revision(), t.TempDir()
 	check(t, b.SaveAs(filepath.Join(to, "copy")))
 	if got := readFile(t, filepath.Join(to, "logs", "day.csv")); got != readFile(t, csv) || b.Revision() != revision {
 		t.Errorf("copied %q, revision %d", got, b.Revision())
 	}
 	check(t, os.RemoveAll(b.dir)) // the former place is no longer needed
-	check(t, b.Set("As found/RV1.set", "232 bar"))
+	check(t, b.Set("As found/RV1.crack", "232 bar"))
 	check(t, b.SaveAs(filepath.Join(to, "again"))) // the recording is there already
 	if problems, err := b.Open(filepath.Join(to, "again.yaml")); err != nil || len(problems) != 0 {
 		t.Errorf("%v, %v", problems, err)
@@ -168,7 +168,7 @@ func TestSaveAsTakesRecordingsAlong(t *testing.T) {
 func TestSaveAsRecordingRefused(t *testing.T) {
 	b, path := recorded(t)
 	csv := filepath.Join(b.dir, "logs", "day.csv")
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	to := t.TempDir()
 	check(t, os.Mkdir(filepath.Join(to, "logs"), 0o755))
 	other := filepath.Join(to, "logs", "day.csv")
@@ -190,7 +190,7 @@ func TestSaveAsRecordingRefused(t *testing.T) {
 // When the audit cannot be written after all, no recordings are left behind.
 func TestSaveAsLeavesNoRecordings(t *testing.T) {
 	b, _ := recorded(t)
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	to := t.TempDir()
 	refused(t, b, b.SaveAs(filepath.Join(to, strings.Repeat("x", 300)+".yaml")), to)
 	if _, err := os.Stat(filepath.Join(to, "logs", "day.csv")); err == nil {

@@ -208,7 +208,7 @@ func TestEditEndsSolve(t *testing.T) {
 	b.openPress(t)
 	<-g.begun
 	for i := range 5 {
-		check(t, b.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i%4)))
+		check(t, b.Set("As found/RV1.crack", fmt.Sprintf("%d bar", 231+i%4)))
 		if running, _, _ := b.Solving(); !running {
 			t.Error("not solving after an edit")
 		}
@@ -287,7 +287,7 @@ func TestSolverFails(t *testing.T) {
 		if fault != nil && (!strings.Contains(fault.Error(), "index out of range") || !strings.Contains(fault.Stack, "solve_test.go")) {
 			t.Errorf("%v\n%s", fault, fault.Stack)
 		}
-		check(t, b.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i)))
+		check(t, b.Set("As found/RV1.crack", fmt.Sprintf("%d bar", 231+i)))
 		if b.Failure() != nil {
 			t.Error("a failure outlives an edit")
 		}
@@ -322,7 +322,7 @@ func TestOpenDropsSolution(t *testing.T) {
 			t.Error("the dropped solution was told")
 		}
 	}
-	check(t, b.Set("As found/RV1.set", "231 bar"))
+	check(t, b.Set("As found/RV1.crack", "231 bar"))
 	if s, _ := b.Solution(); s == nil || b.Current() {
 		t.Error("after an edit the last solution stays, out of date")
 	}
@@ -351,7 +351,7 @@ func TestEditedBeforeSolved(t *testing.T) {
 	defer d.Abandon()
 	check(t, d.OpenSample(press))
 	<-begun
-	check(t, d.Set("As found/RV1.set", "231 bar"))
+	check(t, d.Set("As found/RV1.crack", "231 bar"))
 	told.wait(t, Solved, d.Revision())
 	edited := false
 	for _, e := range told.all() {
@@ -409,7 +409,7 @@ func TestNotifyMayCall(t *testing.T) {
 		d.Recent()
 		switch {
 		case e.Kind == Opened:
-			d.Set("As found/RV1.set", "231 bar")
+			d.Set("As found/RV1.crack", "231 bar")
 		case e.Kind == Autosaved:
 			d.Undo()
 			d.Resolve()
@@ -442,7 +442,7 @@ func BenchmarkEditToVerdict(b *testing.B) {
 	<-solved
 	b.ResetTimer()
 	for i := range b.N {
-		check(b, d.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i%2)))
+		check(b, d.Set("As found/RV1.crack", fmt.Sprintf("%d bar", 231+i%2)))
 		for <-solved != d.Revision() {
 		}
 	}
@@ -454,6 +454,6 @@ func BenchmarkSet(b *testing.B) {
 	defer d.Abandon()
 	check(b, d.OpenSample(press))
 	for i := range b.N {
-		check(b, d.Set("As found/RV1.set", fmt.Sprintf("%d bar", 231+i%2)))
+		check(b, d.Set("As found/RV1.crack", fmt.Sprintf("%d bar", 231+i%2)))
 	}
 }

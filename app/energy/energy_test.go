@@ -226,7 +226,7 @@ func TestFollowsEdits(t *testing.T) {
 	f, s := shown(t, "baling-press.yaml")
 	clickStep(t, s, "1.RV1: relief spill")
 	before := s.calc.value.Text
-	if err := f.Document.Set(f.Solution().Circuits[0].Circuit.Name+"/RV1.set", "200 bar"); err != nil {
+	if err := f.Document.Set(f.Solution().Circuits[0].Circuit.Name+"/RV1.crack", "200 bar"); err != nil {
 		t.Fatal(err)
 	}
 	f.settle()

@@ -122,7 +122,7 @@ func TestVerdictFollowsAnEdit(t *testing.T) {
 	if !strings.Contains(before, row.After.Text) {
 		t.Errorf("the verdict line does not show %s:\n%s", row.After.Text, before)
 	}
-	if err := b.doc.Set("As found/RV1.set", "200 bar"); err != nil {
+	if err := b.doc.Set("As found/RV1.crack", "200 bar"); err != nil {
 		t.Fatal(err)
 	}
 	b.until("edited", func() bool { return !b.doc.Current() || b.busy() || len(b.queue) == 0 })
@@ -219,7 +219,7 @@ func TestUnsavedChangesAreAskedAbout(t *testing.T) {
 	b := newBench(t)
 	b.Open("")
 	b.solved()
-	if err := b.doc.Set("As found/RV1.set", "210 bar"); err != nil {
+	if err := b.doc.Set("As found/RV1.crack", "210 bar"); err != nil {
 		t.Fatal(err)
 	}
 	left := false

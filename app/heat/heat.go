@@ -77,9 +77,9 @@ func (h *Heat) build() {
 		widgets.Card("Mean heat and the cooler for it", container.NewVBox(h.empty, h.tableOf)),
 		h.hot,
 	)
-	scroll := container.NewVScroll(widgets.Spaced(side))
+	scroll := container.NewScroll(widgets.Spaced(side))
 	h.table.In(scroll)
-	split := container.NewHSplit(widgets.Spaced(h.plot.content), scroll)
+	split := container.NewHSplit(container.NewScroll(widgets.Spaced(h.plot.content)), scroll)
 	split.Offset = 0.62
 	h.content = split
 }

@@ -40,7 +40,7 @@ func newPlot(ctx station.Context) *plot {
 	p.head.Importance = widget.LowImportance
 	p.now = widgets.Name(widget.NewLabel(""), "heat.clock")
 	p.now.Truncation = fyne.TextTruncateEllipsis
-	p.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(320, 220), p.draw), "heat.plot")
+	p.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(260, 200), p.draw), "heat.plot")
 	p.figure.Tapped = p.tapped
 	p.line.StrokeWidth = 1.5
 	p.line.Hide()

@@ -82,7 +82,7 @@ func (c *costFields) show(ctx station.Context, cost audit.Cost) {
 		field.SetValue(station.Shown(ctx, v, cost.Likely.Unit, units.Money), "")
 	}
 	if !cost.Given {
-		c.likely.SetValue("", "Not given yet; type it, such as 26000 "+currency(ctx).Symbol+".)
+		c.likely.SetValue("", "Not given yet; type it, such as 26000 "+currency(ctx).Symbol+"; low and high come after it.")
 		for _, o := range c.rest {
 			o.Hide()
 		}

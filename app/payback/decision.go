@@ -122,8 +122,7 @@ func (d *decision) loadBars(r *audit.Decision) {
 			d.of = append(d.of, [2]audit.Figure{before, after})
 		}
 	}
-	scale := widgets.Scale()
-	d.figure.SetMin(fyne.NewSize(300*scale, float32(d.bars.Height())*scale))
+	d.figure.SetMin(fyne.NewSize(300, float32(d.bars.Height())))
 	if len(d.bars.Groups) == 0 {
 		d.figure.Hide()
 		return
@@ -162,6 +161,9 @@ func (d *decision) loadTable(r *audit.Decision) {
 		rows = append(rows, widgets.FigureRow{Name: "What it brings"})
 	}
 	for _, f := range r.Outcome {
+		if f.Name == "simple payback" && !known(f.Value) {
+			continue // said in words below the table
+		}
 		rows = append(rows, widgets.FigureRow{Name: f.Name, Cells: []audit.Figure{{}, {}, f}, Sum: f.Name == "simple payback"})
 	}
 	setHidden(d.table.Table, len(rows) == 0)

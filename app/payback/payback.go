@@ -40,9 +40,9 @@ func New(ctx station.Context) station.Station {
 	p.below = container.NewVBox(widget.NewSeparator(), widgets.Card("What the figures rest on", p.basis),
 		widgets.Card("What they leave out", p.left))
 	right := container.NewVBox(p.empty, p.alone.Table, p.results, p.below)
-	p.scroll = container.NewVScroll(widgets.Spaced(right))
+	p.scroll = container.NewScroll(widgets.Spaced(right))
 	p.alone.In(p.scroll)
-	split := container.NewHSplit(container.NewVScroll(widgets.Spaced(p.inputs.content)), p.scroll)
+	split := container.NewHSplit(container.NewScroll(widgets.Spaced(p.inputs.content)), p.scroll)
 	split.Offset = 0.36
 	p.content = split
 	return p

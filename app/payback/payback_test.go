@@ -2,12 +2,14 @@ package payback
 
 import (
 	"math"
+	"regexp"
 	"strings"
 	"testing"
 
 	"barlitre/app/station"
 	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
+	"barlitre/audit"
 	"barlitre/audit/pen"
 	"barlitre/machines/units"
 )
@@ -163,11 +165,45 @@ func TestFromEmpty(t *testing.T) {
 	}
 }
 
+// A proposal without a cost, and an audit without a price, say what is missing and take it.
+func TestCostAndPriceFromNothing(t *testing.T) {
+	c, p := shown(t, press)
+	err := c.Document.Edit("strip", func(f *audit.File) error {
+		text := regexp.MustCompile(`(?m)^  retrofit_cost:.*\n`).ReplaceAllString(string(f.Bytes()), "")
+		text = regexp.MustCompile(`(?ms)^energy:.*?^axes:`).ReplaceAllString(text, "axes:")
+		f.Replace([]byte(text))
+		return nil
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	again(c, p)
+	f := c.Document.File()
+	if f.HasPrice || f.Circuits[1].Cost.Given || !p.Mend() || p.shown[0].cost.Table.Visible() || !strings.Contains(p.shown[0].none.Text, "Type it at the left") {
+		t.Fatalf("price %v, cost %v; %q", f.HasPrice, f.Circuits[1].Cost.Given, p.shown[0].none.Text)
+	}
+	c.Show(p, 1190, 590)
+	c.Look("payback-nothing")
+	for _, x := range [][2]string{{"payback.price", "0.2"}, {"payback.cost.likely", "20000"}, {"payback.cost.low", "15 000"}, {"payback.cost.high", "30000 EUR"}} {
+		if f := typeInto(t, c, x[0], x[1]); f.Bad() {
+			t.Errorf("%s: %s", x[0], f.Note.Text)
+		}
+	}
+	again(c, p)
+	cost := c.Document.File().Circuits[1].Cost
+	if cost.Low.SI != 15000 || cost.Likely.SI != 20000 || cost.High.SI != 30000 || p.Mend() || !p.shown[0].cost.Table.Visible() {
+		t.Errorf("the cost is %+v", cost)
+	}
+}
+
 func TestPictures(t *testing.T) {
 	for _, sample := range []string{press, winch, ""} {
 		c, p := shown(t, sample)
 		for _, dark := range []bool{false, true} {
-			c.SetDark(dark)
+			c.SetTheme(dark, 1)
+			if !stationtest.Looking() {
+				break
+			}
 			for size, wh := range map[string][2]float32{"large": {1190, 590}, "small": {930, 480}} {
 				c.Show(p, wh[0], wh[1])
 				c.Look("payback-" + strings.TrimSuffix(sample, ".yaml") + "-" + size + map[bool]string{true: "-dark"}[dark])
@@ -176,6 +212,10 @@ func TestPictures(t *testing.T) {
 		p.scroll.ScrollToBottom()
 		c.Settle(930, 480)
 		c.Look("payback-" + strings.TrimSuffix(sample, ".yaml") + "-bottom")
+		c.SetTheme(false, 2)
+		c.Comma = true
+		c.Show(p, 930, 480)
+		c.Look("payback-" + strings.TrimSuffix(sample, ".yaml") + "-scale2")
 		if m := p.Content().MinSize(); m.Width > 900 || m.Height > 480 {
 			t.Errorf("the least size is %v", m)
 		}

@@ -57,15 +57,15 @@ func newPreview(ctx station.Context, options func() pdf.Options) *preview {
 	p.index = widgets.Name(widget.NewLabel(""), "report.contents")
 	p.index.Wrapping = fyne.TextWrapWord
 	p.index.Importance = widget.LowImportance
-	p.smaller = widgets.Name(widgets.NewTipButton("Smaller", "show the pages smaller", func() { p.resize(-1) }), "report.smaller")
-	p.larger = widgets.Name(widgets.NewTipButton("Larger", "show the pages larger", func() { p.resize(1) }), "report.larger")
+	p.smaller = widgets.Name(widgets.NewTipButton("−", "show the pages smaller", func() { p.resize(-1) }), "report.smaller")
+	p.larger = widgets.Name(widgets.NewTipButton("+", "show the pages larger", func() { p.resize(1) }), "report.larger")
 	p.pages = container.New(&flow{})
-	p.scroll = container.NewScroll(p.pages)
-	up := widgets.Name(widgets.NewTipButton("Back", "the pages before", func() { p.turn(-1) }), "report.back")
-	down := widgets.Name(widgets.NewTipButton("Next", "the pages after", func() { p.turn(1) }), "report.next")
+	p.scroll = container.NewScroll(container.NewVBox(p.index, p.pages))
+	up := widgets.Name(widgets.NewTipButton("◀", "show the pages before", func() { p.turn(-1) }), "report.back")
+	down := widgets.Name(widgets.NewTipButton("▶", "show the pages after", func() { p.turn(1) }), "report.next")
 	bar := container.NewBorder(nil, nil, widget.NewLabelWithStyle("Pages", fyne.TextAlignLeading, fyne.TextStyle{Bold: true}),
 		container.NewHBox(up, down, p.smaller, p.larger), p.head)
-	p.content = container.NewBorder(container.NewVBox(bar, p.index), nil, nil, nil, p.scroll)
+	p.content = container.NewBorder(bar, nil, nil, nil, p.scroll)
 	return p
 }
 
@@ -85,7 +85,7 @@ type drawn struct {
 func (p *preview) turn(by float32) {
 	if len(p.pages.Objects) > 0 {
 		step := p.pages.Objects[0].MinSize().Height + flowGap*widgets.Scale()
-		most := max(0, p.pages.Size().Height-p.scroll.Size().Height)
+		most := max(0, p.scroll.Content.Size().Height-p.scroll.Size().Height)
 		p.scroll.ScrollToOffset(fyne.NewPos(p.scroll.Offset.X, max(0, min(most, p.scroll.Offset.Y+by*step))))
 	}
 }

@@ -55,7 +55,7 @@ func New(ctx station.Context) station.Station {
 	always.Wrapping = fyne.TextWrapWord
 	always.Importance = widget.LowImportance
 	parts.Add(always)
-	left := container.NewVScroll(widgets.Spaced(container.NewVBox(widgets.Card("First page", head), widget.NewSeparator(), widgets.Card("Sections", parts))))
+	left := container.NewScroll(widgets.Spaced(container.NewVBox(widgets.Card("First page", head), widget.NewSeparator(), widgets.Card("Sections", parts))))
 	side := container.NewBorder(nil, widgets.Spaced(r.saver.content), nil, nil, left)
 	split := container.NewHSplit(side, widgets.Spaced(r.preview.content))
 	split.Offset = 0.32

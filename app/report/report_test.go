@@ -298,19 +298,26 @@ func TestPictures(t *testing.T) {
 	for _, sample := range []string{press, winch, ""} {
 		c, r := shown(t, sample)
 		for _, dark := range []bool{false, true} {
-			c.SetDark(dark)
+			c.SetTheme(dark, 1)
+			if !stationtest.Looking() {
+				break
+			}
 			for size, wh := range map[string][2]float32{"large": {1190, 590}, "small": {930, 480}} {
 				c.Show(r, wh[0], wh[1])
 				c.Look("report-" + strings.TrimSuffix(sample, ".yaml") + "-" + size + map[bool]string{true: "-dark"}[dark])
 			}
 		}
 		if sample == press {
-			c.SetDark(false)
+			c.SetTheme(false, 1)
 			press1(t, "report.larger")
 			press1(t, "report.larger")
 			c.Settle(1190, 590)
 			c.Look("report-larger")
 		}
+		c.SetTheme(false, 2)
+		c.Comma = true
+		c.Show(r, 930, 480)
+		c.Look("report-" + strings.TrimSuffix(sample, ".yaml") + "-scale2")
 		if m := r.Content().MinSize(); m.Width > 900 || m.Height > 480 {
 			t.Errorf("the least size is %v", m)
 		}

@@ -59,7 +59,7 @@ func newSaver(ctx station.Context, options func() pdf.Options) *saver {
 	s.cancel = widgets.Name(widget.NewButton("Cancel", func() { s.stop() }), "report.cancel")
 	s.working = container.NewBorder(nil, nil, nil, s.cancel, s.bar)
 	s.working.Hide()
-	s.content = container.NewVBox(s.working, container.NewGridWithColumns(3, asPDF, asCSV, asJSON))
+	s.content = container.NewVBox(s.working, container.New(&buttonRow{}, asPDF, asCSV, asJSON))
 	s.refresh()
 	return s
 }

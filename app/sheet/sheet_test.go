@@ -30,10 +30,10 @@ func TestClickSelects(t *testing.T) {
 	if title != "RV1" || !strings.HasPrefix(sub, "relief valve") {
 		t.Errorf("the panel shows %q, %q", title, sub)
 	}
-	if got := b.field("set").field.Text; got != "230" {
-		t.Errorf("the field of the setting shows %q, the file has 230 bar", got)
+	if got := b.field("crack").field.Text; got != "220" {
+		t.Errorf("the field of the setting shows %q, the file has 220 bar", got)
 	}
-	if got := b.field("set").origin.Selected; got != "measured" {
+	if got := b.field("crack").origin.Selected; got != "measured" {
 		t.Errorf("its origin is %q, the file has measured", got)
 	}
 	b.click(1, b.middle(1, "P1"), 0)
@@ -268,7 +268,7 @@ func TestDumpNames(t *testing.T) {
 	b.win.Canvas().Capture()
 	var out bytes.Buffer
 	widgets.Dump(&out, b.win.Canvas())
-	for _, want := range []string{"sheet.0\tAs found [RV1]\t", "sheet.0/RV1\tRV1 · relief valve", "sheet.1/P1\t", "field.set\t230\t", "field.set.origin\tmeasured\t",
+	for _, want := range []string{"sheet.0\tAs found [RV1]\t", "sheet.0/RV1\tRV1 · relief valve", "sheet.1/P1\t", "field.crack\t220\t", "field.crack.origin\tmeasured\t",
 		"sheet.findings\t", "sheet.findings/0\tCaution", "sheet.wide\tShow one sheet (W)\t", "sheet.fit\tFit (F)\t", "sheet.heat\tShow heat over the cycle\t", "sheet.live/Heat\t"} {
 		if !strings.Contains(out.String(), want) {
 			t.Errorf("the dump lacks %q", want)

@@ -20,11 +20,11 @@ func TestValueReachesTheFile(t *testing.T) {
 		{"3350", "3350 psi", "3350", "psi"}, // in the value's own unit
 		{"22 MPa", "22 MPa", "22", "MPa"},
 	} {
-		r := b.field("set")
+		r := b.field("crack")
 		r.field.SetText(c.typed)
 		r.field.OnSubmitted(c.typed)
 		b.pump()
-		v := b.doc.File().Circuits[0].Block("RV1").Values["set"]
+		v := b.doc.File().Circuits[0].Block("RV1").Values["crack"]
 		if v.Text != c.written {
 			t.Errorf("typed %q: the file has %q, expected %q", c.typed, v.Text, c.written)
 		}
@@ -43,7 +43,7 @@ func TestValueReachesTheFile(t *testing.T) {
 		t.Errorf("undo takes back %q", name)
 	}
 	b.pump()
-	if got := b.field("set").field.Text; got != "3350" {
+	if got := b.field("crack").field.Text; got != "3350" {
 		t.Errorf("after undo the field shows %q", got)
 	}
 }
@@ -59,7 +59,7 @@ func TestRefusedValueStays(t *testing.T) {
 		{"2000 bar", "1000"}, // out of range
 		{"", "empty"},
 	} {
-		r := b.field("set")
+		r := b.field("crack")
 		r.field.SetText(c.typed)
 		r.field.OnSubmitted(c.typed)
 		b.pump()
@@ -73,7 +73,7 @@ func TestRefusedValueStays(t *testing.T) {
 			t.Fatalf("%q reached the file", c.typed)
 		}
 	}
-	r := b.field("set")
+	r := b.field("crack")
 	r.field.SetText("2000 bar")
 	r.field.OnSubmitted("2000 bar")
 	if !b.s.Mend() {
@@ -81,11 +81,11 @@ func TestRefusedValueStays(t *testing.T) {
 	}
 	b.Select(0, "V1")
 	b.Select(0, "RV1")
-	if r := b.field("set"); r.field.Text != "2000 bar" || !r.field.Bad() || !strings.Contains(r.note.Text, "1000") {
+	if r := b.field("crack"); r.field.Text != "2000 bar" || !r.field.Bad() || !strings.Contains(r.note.Text, "1000") {
 		t.Errorf("coming back, the refused value is %q, marked %v: %q", r.field.Text, r.field.Bad(), r.note.Text)
 	}
-	b.field("set").field.TypedKey(&fyne.KeyEvent{Name: fyne.KeyEscape})
-	if r := b.field("set"); r.field.Text != "230" || r.field.Bad() {
+	b.field("crack").field.TypedKey(&fyne.KeyEvent{Name: fyne.KeyEscape})
+	if r := b.field("crack"); r.field.Text != "220" || r.field.Bad() {
 		t.Errorf("Escape brings back %q, marked %v", r.field.Text, r.field.Bad())
 	}
 }
@@ -93,10 +93,10 @@ func TestRefusedValueStays(t *testing.T) {
 func TestFocusLossCommits(t *testing.T) {
 	b := newBench(t, press, window)
 	b.Select(0, "RV1")
-	b.win.Canvas().Focus(b.field("set").field)
-	b.field("set").field.SetText("228")
+	b.win.Canvas().Focus(b.field("crack").field)
+	b.field("crack").field.SetText("228")
 	b.click(0, b.middle(0, "V1"), 0)
-	if got := b.doc.File().Circuits[0].Block("RV1").Values["set"].Text; got != "228 bar" {
+	if got := b.doc.File().Circuits[0].Block("RV1").Values["crack"].Text; got != "228 bar" {
 		t.Errorf("a click elsewhere leaves the file at %q", got)
 	}
 	if b.block != "V1" {
@@ -109,11 +109,11 @@ func TestDecimalComma(t *testing.T) {
 	b.comma = true
 	b.s.Changed(station.Settings)
 	b.Select(0, "RV1")
-	r := b.field("set")
+	r := b.field("crack")
 	r.field.SetText("228,5")
 	r.field.OnSubmitted("228,5")
 	b.pump()
-	if got := b.doc.File().Circuits[0].Block("RV1").Values["set"].Text; got != "228.5 bar" {
+	if got := b.doc.File().Circuits[0].Block("RV1").Values["crack"].Text; got != "228.5 bar" {
 		t.Errorf("the file has %q", got)
 	}
 	if r.field.Text != "228,5" {
@@ -169,15 +169,15 @@ func TestOriginChoiceAndNote(t *testing.T) {
 
 func TestFindingMarksItsField(t *testing.T) {
 	b := newBench(t, press, window)
-	b.Select(0, "RV1")
-	if err := b.doc.Set("As found/RV1.override", "1000 bar per 100 L/min"); err != nil {
+	b.Select(0, "C1")
+	if err := b.doc.Set("As found/C1.rod", "130 mm"); err != nil {
 		t.Fatal(err)
 	}
 	b.solved()
-	if got := b.field("override").warn.Text; !strings.Contains(got, "override") {
-		t.Errorf("below the override stands %q", got)
+	if got := b.field("rod").warn.Text; !strings.Contains(got, "bore") {
+		t.Errorf("below the rod stands %q", got)
 	}
-	if b.s.editors[0].opt.Findings["RV1"] != circuit.Stops || !b.s.Mend() {
-		t.Errorf("on the sheet RV1 is marked %q; the station needs mending: %v", b.s.editors[0].opt.Findings["RV1"], b.s.Mend())
+	if b.s.editors[0].opt.Findings["C1"] != circuit.Stops || !b.s.Mend() {
+		t.Errorf("on the sheet C1 is marked %q; the station needs mending: %v", b.s.editors[0].opt.Findings["C1"], b.s.Mend())
 	}
 }

@@ -24,8 +24,9 @@ func Row(name string, o fyne.CanvasObject, note *widget.Label) fyne.CanvasObject
 	return container.New(&rowLayout{}, label, o, note)
 }
 
-// rowLayout: the name in a column of fixed width, the object beside it, the note below.
-type rowLayout struct{}
+// rowLayout: the name in a column of fixed width and the object beside it, or below it
+// where that leaves too little room; the note under the object.
+type rowLayout struct{ stacked bool }
 
 const rowName = 128 // width of the names, at scale 1
 
@@ -40,17 +41,25 @@ func (l *rowLayout) note(objects []fyne.CanvasObject) *widget.Label {
 }
 
 func (l *rowLayout) Layout(objects []fyne.CanvasObject, size fyne.Size) {
-	w := rowName * Scale()
-	h := max(objects[0].MinSize().Height, objects[1].MinSize().Height)
-	objects[0].Move(fyne.NewPos(0, (h-objects[0].MinSize().Height)/2))
-	objects[0].Resize(fyne.NewSize(w, objects[0].MinSize().Height))
-	objects[1].Move(fyne.NewPos(w, 0))
-	objects[1].Resize(fyne.NewSize(size.Width-w, h))
+	name := objects[0].MinSize().Height
+	h := objects[1].MinSize().Height
+	x, y := rowName*Scale(), float32(0)
+	if l.stacked = size.Width < 2*x; l.stacked {
+		objects[0].Move(fyne.NewPos(0, 0))
+		objects[0].Resize(fyne.NewSize(size.Width, name))
+		x, y = 0, name
+	} else {
+		h = max(h, name)
+		objects[0].Move(fyne.NewPos(0, (h-name)/2))
+		objects[0].Resize(fyne.NewSize(x, name))
+	}
+	objects[1].Move(fyne.NewPos(x, y))
+	objects[1].Resize(fyne.NewSize(size.Width-x, h))
 	if len(objects) < 3 {
 		return
 	}
-	objects[2].Move(fyne.NewPos(w, h))
-	objects[2].Resize(fyne.NewSize(size.Width-w, max(0, size.Height-h)))
+	objects[2].Move(fyne.NewPos(x, y+h))
+	objects[2].Resize(fyne.NewSize(size.Width-x, max(0, size.Height-y-h)))
 	if l.note(objects) == nil {
 		objects[2].Hide()
 	} else {
@@ -58,10 +67,15 @@ func (l *rowLayout) Layout(objects []fyne.CanvasObject, size fyne.Size) {
 	}
 }
 
+// MinSize is as high as the last layout asked for.
 func (l *rowLayout) MinSize(objects []fyne.CanvasObject) fyne.Size {
-	h := max(objects[0].MinSize().Height, objects[1].MinSize().Height)
+	name, object := objects[0].MinSize().Height, objects[1].MinSize()
+	h := max(name, object.Height)
+	if l.stacked {
+		h = name + object.Height
+	}
 	if n := l.note(objects); n != nil {
 		h += n.MinSize().Height
 	}
-	return fyne.NewSize(rowName*Scale()+max(60*Scale(), objects[1].MinSize().Width), h)
+	return fyne.NewSize(max(60*Scale(), object.Width), h)
 }

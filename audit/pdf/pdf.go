@@ -22,6 +22,7 @@ type Section string
 const (
 	Decision   Section = "Decision"
 	Basis      Section = "What the figures rest on"
+	Circuits   Section = "Circuits"
 	Energy     Section = "Where the energy goes"
 	Duty       Section = "Duty and course over time"
 	Heat       Section = "Heat and cooler"
@@ -36,7 +37,7 @@ const cautionPages Section = "Cautions and limits of use"
 
 // Sections lists all sections in the order of printing; the slice is the caller's.
 func Sections() []Section {
-	return []Section{Decision, Basis, Energy, Duty, Heat, Money, Parameters, Findings, Method}
+	return []Section{Decision, Basis, Circuits, Energy, Duty, Heat, Money, Parameters, Findings, Method}
 }
 
 // Options of Write; only Date is needed.
@@ -119,6 +120,7 @@ type layout struct {
 	room   float64         // share of the usual space between things
 	total  int             // pages in all, as the last printing found them
 	starts map[Section]int // page on which a section starts
+	drawn  *drawings       // nil before they are asked for
 }
 
 func newLayout(s *audit.Solution, opt Options) *layout {
@@ -181,7 +183,7 @@ func (l *layout) print(to paper) {
 		Section
 		draw func()
 	}{
-		{Decision, l.decisions}, {Basis, l.basis}, {Energy, l.energy}, {Duty, l.duties}, {Heat, l.heat},
+		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Duty, l.duties}, {Heat, l.heat},
 		{Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {Method, l.method},
 	} {
 		if slices.Contains(l.without, part.Section) {
@@ -204,6 +206,8 @@ func (l *layout) print(to paper) {
 // follow returns the height of what stays with the heading of a section.
 func (l *layout) follow(s Section) float64 {
 	switch steps := l.lossSteps(); {
+	case s == Circuits && len(l.s.Circuits) > 0:
+		return l.firstDrawings()
 	case s == Energy && len(steps) > 0:
 		return 2 + figureLeast*steps[0].Height()
 	case s == Duty && len(l.s.File.Duties) > 0:

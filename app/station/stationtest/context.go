@@ -94,6 +94,9 @@ func refresh(o fyne.CanvasObject) {
 	}
 }
 
+// Looking reports whether pictures are asked for.
+func Looking() bool { return os.Getenv("BARLITRE_LOOK") != "" }
+
 // Look writes a picture of the window into the folder that the environment variable
 // BARLITRE_LOOK names; nothing without it.
 func (c *Context) Look(name string) {
@@ -111,10 +114,10 @@ func (c *Context) Look(name string) {
 	}
 }
 
-// SetDark changes the theme.
-func (c *Context) SetDark(dark bool) {
+// SetTheme changes the theme; scale 0 is 1.
+func (c *Context) SetTheme(dark bool, scale float32) {
 	c.Dark = dark
-	fyne.CurrentApp().Settings().SetTheme(widgets.Theme{Dark: dark})
+	fyne.CurrentApp().Settings().SetTheme(widgets.Theme{Dark: dark, Scale: scale})
 }
 
 // Doc and the others implement station.Context.

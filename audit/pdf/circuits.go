@@ -1,0 +1,270 @@
+package pdf
+
+import (
+	"fmt"
+	"math"
+
+	"barlitre/audit"
+	"barlitre/audit/figures"
+	"barlitre/circuit"
+	"barlitre/circuit/duty"
+	"barlitre/machines/units"
+)
+
+// The scale of drawn circuits [mm a module]: at the most, names are little larger
+// than body text; below the least, circuits no longer share a page.
+const (
+	drawnMost  = 1.7
+	drawnLeast = 1.15
+	drawnSmall = 0.8 // below, the reader is told to magnify
+)
+
+// Room about a drawn circuit [mm].
+const (
+	drawnGap = 1.5
+	symbols  = "Symbols based on ISO 1219-1."
+)
+
+// instant is the moment at which all circuits are drawn.
+type instant struct {
+	of   *audit.CircuitRun // whose power is largest then; nil = nothing is solved
+	duty int               // its number
+	t    float64           // s
+}
+
+// nearMost is the share of the largest power that counts as that power: the largest
+// value itself often stands in a ramp that lasts for hundredths of a second.
+const nearMost = 0.95
+
+// mostDrawn finds where the circuit as found, or, where none is solved, the first
+// circuit that is, draws most power: the middle of the longest stretch near it.
+func mostDrawn(s *audit.Solution) instant {
+	for _, proposal := range []bool{false, true} {
+		for _, c := range s.Circuits {
+			at := instant{}
+			for i, d := range c.Duties {
+				if c.Proposal == proposal && d.Balance != nil && d.Plot != nil &&
+					(at.of == nil || d.Balance.PeakSupply > at.of.Duties[at.duty].Balance.PeakSupply) {
+					at = instant{of: c, duty: i}
+				}
+			}
+			if at.of != nil {
+				at.t = middleOfMost(at.of.Duties[at.duty])
+				return at
+			}
+		}
+	}
+	return instant{}
+}
+
+// middleOfMost is the middle of the longest stretch in which a run draws nearMost of
+// its largest power, or the time of the largest power where there is no such stretch.
+// Courses are read after a step; where power falls in one, the time is just before it.
+func middleOfMost(run *audit.DutyRun) float64 {
+	limit := nearMost * run.Balance.PeakSupply
+	mid, longest, from := run.Balance.PeakSupplyAt, 0.0, 0.0
+	t, v := total(run.Plot, func(ch circuit.Channel) bool { return ch.Role == circuit.Supply })
+	for i := range t {
+		if v[i] < limit {
+			continue
+		}
+		if i == 0 || v[i-1] < limit {
+			from = t[i]
+		}
+		if length := t[i] - from; length > longest {
+			mid, longest = from+length/2, length
+		}
+	}
+	if before := math.Nextafter(mid, math.Inf(-1)); drawnAt(run.Plot, mid) < limit && drawnAt(run.Plot, before) >= limit {
+		return before
+	}
+	return mid
+}
+
+// drawnAt is the power drawn at time t [W].
+func drawnAt(p *audit.Plot, t float64) float64 {
+	sum := 0.0
+	for i, c := range p.Channels {
+		if c.Role == circuit.Supply {
+			sum += p.Powers[i].At(t)
+		}
+	}
+	return sum
+}
+
+// run returns the duty of a circuit that is drawn, nil where it is not solved.
+func (at instant) run(c *audit.CircuitRun) *audit.DutyRun {
+	if at.of == nil || at.duty >= len(c.Duties) || c.Duties[at.duty].Balance == nil || c.Duties[at.duty].Plot == nil {
+		return nil
+	}
+	return c.Duties[at.duty]
+}
+
+// drawn is a circuit ready for the page.
+type drawn struct {
+	*figures.Sheet
+	c     *audit.CircuitRun
+	run   *audit.DutyRun // nil = without results
+	state *figures.SheetState
+	notes []string // between its name and the drawing
+	w, h  float64  // modules
+}
+
+// drawings are all circuits at one instant, on common scales.
+type drawings struct {
+	all    []drawn
+	at     instant
+	scales figures.SheetScales
+	intro  string
+	share  int     // how many share a page at the least
+	k      float64 // mm a module
+}
+
+// drawings lays all circuits out, once for all trials of the report.
+func (l *layout) drawings() *drawings {
+	if l.drawn != nil {
+		return l.drawn
+	}
+	d := &drawings{at: mostDrawn(l.s)}
+	var runs []*audit.DutyRun
+	for _, c := range l.s.Circuits {
+		one := drawn{c: c, run: d.at.run(c), Sheet: figures.NewSheet(c.Circuit)}
+		if one.run != nil {
+			one.Sheet = one.Labelled(one.run)
+			one.state = figures.OverCycle(one.run, d.at.t)
+			runs = append(runs, one.run)
+		}
+		one.notes = l.small().wrap(l.drawnNote(d.at, one), fullW)
+		one.w, one.h = one.Size()
+		d.all = append(d.all, one)
+	}
+	d.scales = figures.ScalesOf(runs...)
+	d.intro = l.drawnIntro(d.at)
+	l.fitDrawings(d)
+	if d.k < drawnSmall {
+		d.intro += " The circuits are large; magnify the page to read them."
+	}
+	l.drawn = d
+	return d
+}
+
+// drawnIntro says which instant is drawn and what the signs mean.
+func (l *layout) drawnIntro(at instant) string {
+	if at.of == nil {
+		return "No circuit could be solved, so all are drawn without results."
+	}
+	run := at.of.Duties[at.duty]
+	phase := phaseAt(run.Duty, at.t)
+	if phase != "" {
+		phase = " (" + phase + ")"
+	}
+	return fmt.Sprintf("All circuits at the same instant, at %s%s of duty “%s”: the middle of the longest stretch in which “%s” draws at least %s of its largest power, %s. "+
+		"Pressures, flows, speeds and openings are those of this instant; arrowheads show where the oil goes. "+
+		"Discs and the figures in their colour are the heat of one whole cycle, by area: the larger the disc, the more energy is lost there. "+
+		"Tint, width and discs have the same scales in all circuits.", units.Format(at.t, units.Preferred(units.Time, l.r.System), 4), phase, run.Duty.Name, at.of.Circuit.Name, units.Format(nearMost, units.Percent, 2),
+		units.Format(run.Balance.PeakSupply, units.Preferred(units.Power, l.r.System), 4))
+}
+
+// phaseAt names the phase of a duty at time t, "" where there is none.
+func phaseAt(d *duty.Duty, t float64) string {
+	name := ""
+	for _, p := range d.Phases {
+		if p.From <= t {
+			name = p.Name
+		}
+	}
+	return name
+}
+
+// drawnNote says what a circuit draws at the instant, and turns to heat over the cycle.
+func (l *layout) drawnNote(at instant, d drawn) string {
+	if d.run == nil {
+		if at.of == nil {
+			return "This circuit could not be solved; it is drawn without results. See the findings."
+		}
+		return "This circuit could not be solved over the duty shown; it is drawn without results. See the findings."
+	}
+	power := drawnAt(d.run.Plot, at.t)
+	heat := 0.0
+	for _, b := range d.c.Circuit.Blocks {
+		heat += d.state.Heat(b.ID)
+	}
+	in := func(v float64, dim units.Dim) string { return units.Format(v, units.Preferred(dim, l.r.System), 4) }
+	what := "Draws"
+	if power < 0 {
+		what, power = "Returns", -power
+	}
+	return fmt.Sprintf("%s %s at this instant; turns %s into heat over the cycle.", what, in(power, units.Power), in(heat, units.Energy))
+}
+
+// fitDrawings chooses one scale for all circuits: the largest at which two share a page,
+// or, where that is too small to read, at which each fits a page.
+func (l *layout) fitDrawings(d *drawings) {
+	_, head := l.headLines(1, string(Circuits))
+	room := bottom - top - head - 3.6 - l.introHeight(d)
+	note := l.small().line() + drawnGap
+	most, pair, one := drawnMost, math.Inf(1), math.Inf(1)
+	for i, c := range d.all {
+		most = min(most, fullW/c.w)
+		left := room - l.above(c)
+		one = min(one, max(left-note, (bottom-top)/3)/(figures.LegendHeight+c.h))
+		if i%2 == 0 && i+1 < len(d.all) {
+			next := d.all[i+1]
+			pair = min(pair, (left-l.above(next)-note)/(figures.LegendHeight+c.h+next.h))
+		}
+	}
+	d.k, d.share = min(most, one), 1
+	if pair = min(pair, most); len(d.all) > 1 && pair >= drawnLeast {
+		d.k, d.share = min(d.k, pair), 2
+	}
+}
+
+func (l *layout) introHeight(d *drawings) float64 {
+	return float64(len(l.body().wrap(d.intro, fullW)))*l.body().line() + 1.2
+}
+
+// above is the height of what stands over the drawing of a circuit, and of the gap below.
+func (l *layout) above(c drawn) float64 {
+	_, head := l.headLines(2, c.c.Circuit.Name)
+	return 5.5 + head + 1.2 + float64(len(c.notes))*l.small().line() + drawnGap
+}
+
+// below is the height of what stays with the name of a circuit.
+func (l *layout) below(d *drawings, c drawn) float64 {
+	return float64(len(c.notes))*l.small().line() + d.k*c.h
+}
+
+// firstDrawings is the height of what stays with the heading of the section: what
+// explains the drawings, and as many of them as share the page.
+func (l *layout) firstDrawings() float64 {
+	d := l.drawings()
+	h := l.introHeight(d) + d.k*figures.LegendHeight
+	for _, c := range d.all[:min(len(d.all), d.share)] {
+		h += l.above(c) + d.k*c.h
+	}
+	return h
+}
+
+// circuits prints every circuit as it is drawn, with its results.
+func (l *layout) circuits() {
+	d := l.drawings()
+	if len(d.all) == 0 {
+		l.para("The file holds no circuit.", l.body())
+		return
+	}
+	opt := figures.SheetOptions{Palette: l.pal, System: l.r.System, Scales: d.scales}
+	l.para(d.intro, l.body())
+	l.need(d.k * figures.LegendHeight)
+	l.p.Push(side, l.y, d.k)
+	figures.DrawLegend(l.p, fullW/d.k, d.scales, true, opt)
+	l.p.Pop()
+	l.y += d.k * figures.LegendHeight
+	for _, c := range d.all {
+		l.heading(2, c.c.Circuit.Name, l.below(d, c))
+		l.lines(side, c.notes, l.small())
+		l.need(d.k * c.h)
+		c.Draw(l.p, side+(fullW-d.k*c.w)/2, l.y, d.k, c.state, opt)
+		l.y += d.k*c.h + drawnGap
+	}
+	l.para(symbols, l.small())
+}
