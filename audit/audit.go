@@ -47,6 +47,7 @@ type CircuitRun struct {
 type DutyRun struct {
 	Duty        *duty.Duty
 	Balance     *Balance // nil when the circuit could not be solved
+	Cycles      int      // averaged: the cycles after which a circuit that remembers repeats itself
 	Certificate circuit.Certificate
 	Peak        circuit.Peak
 	Shortfalls  []circuit.Shortfall
@@ -194,6 +195,13 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	watch, plot := c.NewWatch(params, series), newRecorder(c.Signals(), c.Channels(), steps)
 	counter := &stepCounter{progress: j.progress, of: steps}
 	receivers := circuit.Receivers{ledger, watch, plot, counter}
+	if c.HasSlowStates() {
+		// Instants of switching add steps, and a period may be several cycles: the plot
+		// keeps the first of them whole.
+		plot = newRecorder(c.Signals(), c.Channels(), steps)
+		plot.plot.Thinned = false
+		receivers = circuit.Receivers{ledger, watch, &until{plot, series.T[steps-1]}}
+	}
 	table, err := j.openTable(c, r, number)
 	if err != nil {
 		return err
@@ -201,7 +209,16 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	if table != nil {
 		receivers = append(receivers, table)
 	}
-	_, cert, err := circuit.Run(ctx, c, params, series, j.solution.Conditions, circuit.State{}, receivers)
+	cycles, cert, err := 1, circuit.Certificate{}, error(nil)
+	if r.Duty.Repeats {
+		cycles, _, cert, err = circuit.RunPeriodic(ctx, c, params, series, j.solution.Conditions, receivers)
+	} else {
+		_, cert, err = circuit.Run(ctx, c, params, series, j.solution.Conditions, circuit.State{}, receivers)
+	}
+	if errors.Is(err, circuit.ErrNoPeriod) {
+		j.note(r.Duty.Name, []circuit.Finding{{Level: circuit.Warns, Text: err.Error()}})
+		err = nil
+	}
 	j.progress.add(progressParts - counter.passed)
 	if table != nil {
 		if failed := table.close(); failed != nil {
@@ -216,10 +233,25 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 		return nil
 	}
 	r.Certificate, r.Plot = cert, plot.plot
-	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls()
-	r.Balance = ledger.Balance(r.Duty.Repeats)
+	r.Cycles = cycles
+	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls(cycles)
+	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())
 	return nil
+}
+
+// until passes time steps up to a time on.
+type until struct {
+	to   circuit.Receiver
+	last float64
+}
+
+// Sample passes s on while its time has not come.
+func (u *until) Sample(s *circuit.Sample) error {
+	if s.T > u.last {
+		return nil
+	}
+	return u.to.Sample(s)
 }
 
 // tableFile is a table with the file below it. It remembers its first error and

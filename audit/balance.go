@@ -75,6 +75,26 @@ func (l *Ledger) Balance(repeats bool) *Balance {
 	return b
 }
 
+// average turns a balance over n cycles into that of one: the mean of each figure.
+func (b *Balance) average(n int) *Balance {
+	if n <= 1 {
+		return b
+	}
+	k := 1 / float64(n)
+	b.Cycle *= k
+	b.Seconds, b.SupplyIn, b.Returned = b.Seconds.Times(k), b.SupplyIn.Times(k), b.Returned.Times(k)
+	for i := range b.Work {
+		b.Work[i].Positive, b.Work[i].Negative = b.Work[i].Positive.Times(k), b.Work[i].Negative.Times(k)
+	}
+	for i := range b.Stored {
+		b.Stored[i].Energy = b.Stored[i].Energy.Times(k)
+	}
+	for i := range b.Losses {
+		b.Losses[i].Energy = b.Losses[i].Energy.Times(k)
+	}
+	return b
+}
+
 // WorkPositive returns the work given to loads that resist [J], >= 0.
 func (b *Balance) WorkPositive() Split {
 	var s Split

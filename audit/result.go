@@ -149,7 +149,7 @@ func (s *Solution) Result() *Result {
 func dutyResult(d *DutyRun) DutyResult {
 	b, c := d.Balance, d.Certificate
 	out := DutyResult{
-		Name: d.Duty.Name, HoursPerYear: d.Duty.Hours / units.Hour, CyclesAveraged: 1, CycleS: b.Cycle, TimeSteps: b.Steps,
+		Name: d.Duty.Name, HoursPerYear: d.Duty.Hours / units.Hour, CyclesAveraged: max(d.Cycles, 1), CycleS: b.Cycle, TimeSteps: b.Steps,
 		Energy: EnergyResult{SupplyIn: b.SupplyIn.Total(), Returned: b.Returned.Total(),
 			WorkPositive: b.WorkPositive().Total(), WorkNegative: b.WorkNegative().Total(),
 			Stored: b.StoredEnergy().Total(), HeatToOil: b.HeatToOil().Total(), Losses: []LossResult{}},

@@ -140,6 +140,9 @@ const (
 	kindLine           = "line"
 	kindFilter         = "filter"
 	kindJunction       = "junction"
+	kindAccumulator    = "accumulator"
+	kindUnloading      = "unloading"
+	kindFlywheel       = "flywheel"
 )
 
 // catalog lists the kinds, one line each, in the order of the block shelf. It is
@@ -186,6 +189,8 @@ func init() {
 	catalog = []*Kind{
 		tankKind,
 		pressureSourceKind,
+		accumulatorKind,
+		flywheelKind,
 		electricMotorKind,
 		converterKind,
 		pumpKind,
@@ -194,6 +199,7 @@ func init() {
 		cylinderKind,
 		valveKind,
 		reliefKind,
+		unloadingKind,
 		checkKind,
 		pilotCheckKind,
 		counterbalanceKind,

@@ -112,7 +112,7 @@ func (k *checker) fed(control *Block) {
 		return
 	}
 	for n := range reach(k.c, k.of, PortRef{control.ID, "P"}) {
-		if n.src != "" {
+		if n.src != "" || n.acc != "" {
 			return
 		}
 		for _, p := range n.ports {
@@ -153,7 +153,7 @@ var outlets = map[string]map[string][]string{
 	kindCheck: {"in": {"out"}}, kindPilotCheck: {"V": {"C"}, "C": {"V"}}, kindCounterbalance: {"V": {"C"}, "C": {"V"}},
 	kindCompensator: {"P": {"A"}}, kindValve: {"P": {"A", "B", "T"}, "A": {"T", "P"}, "B": {"T", "P"}},
 	kindRelief: {"P": {"T"}}, kindPump: {"P": {"S"}, "S": {"P"}}, kindHydraulicMotor: {"A": {"B"}, "B": {"A"}},
-	kindCylinder: {"A": {"B"}, "B": {"A"}}, kindChargePump: {"P": {"T"}, "S": {"P"}},
+	kindUnloading: {"P": {"A", "T"}}, kindCylinder: {"A": {"B"}, "B": {"A"}}, kindChargePump: {"P": {"T"}, "S": {"P"}},
 }
 
 // escapes reports whether oil can get from a node to a tank or source, not through
@@ -167,5 +167,5 @@ func (k *checker) escapes(start *net, not string) bool {
 		}
 		return outlets[b.Kind][port]
 	}
-	return flood(k.c, k.of, start, ways, func(n *net, _ int) bool { return n.tank != "" || n.src != "" || pump }) || pump
+	return flood(k.c, k.of, start, ways, func(n *net, _ int) bool { return n.tank != "" || n.src != "" || n.acc != "" || pump }) || pump
 }

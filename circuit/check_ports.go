@@ -184,7 +184,7 @@ func (k *checker) islands() {
 	}
 	fed := map[*net]bool{}
 	for _, n := range k.nets {
-		if n.tank != "" || n.src != "" {
+		if n.tank != "" || n.src != "" || n.acc != "" {
 			fed[find(n)] = true
 		}
 	}

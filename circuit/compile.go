@@ -32,6 +32,7 @@ type Compiled struct {
 	models   []model
 	inertia  bool
 	electric int // number of electric nodes
+	slow     []slowState
 	portP    []portSignal
 	void     int // channel of the voids of all nodes
 }

@@ -166,7 +166,9 @@ func (b *binding) get(i int, fallback float64) float64 {
 
 // step is one time step to be balanced.
 type step struct {
-	k        int // index into the series
+	k        int       // index into the series
+	t, dt    float64   // s; dt since the point before, 0 at the first and at both sides of a step
+	slow     []float64 // slow states at the point before
 	axes     []axisStep
 	standing bool   // all axes stand
 	atRest   AtRest // what the prime movers do while all stand
@@ -235,6 +237,7 @@ type booking struct {
 	pow   []float64
 	shaft []shaftBook
 	el    []float64 // W drawn at electric nodes, by node
+	next  []float64 // slow states at this point
 }
 
 type shaftBook struct{ torque, speed float64 } // N·m needed, rad/s

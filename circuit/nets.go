@@ -11,6 +11,7 @@ type net struct {
 	lines []int // file lines
 	tank  string
 	src   string // pressure source on it
+	acc   string // accumulator on it
 }
 
 // name is what a person may call the net: its first port in reading order.
@@ -99,6 +100,8 @@ func netsOf(c *Circuit) (nets []*net, of map[PortRef]*net) {
 				n.tank = b.ID
 			case kindPressureSource:
 				n.src = b.ID
+			case kindAccumulator:
+				n.acc = b.ID
 			}
 			if b.Kind == kindJunction {
 				continue

@@ -33,7 +33,7 @@ func (p polarity) fixed() float64 {
 var passes = map[string]map[string][]string{
 	kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}},
 	kindCheck: {"in": {"out"}, "out": {"in"}}, kindPilotCheck: {"V": {"C"}, "C": {"V"}}, kindCounterbalance: {"V": {"C"}, "C": {"V"}},
-	kindCompensator: {"P": {"A"}, "A": {"P"}},
+	kindCompensator: {"P": {"A"}, "A": {"P"}}, kindUnloading: {"P": {"A"}, "A": {"P"}},
 }
 
 // polarityOf finds which port of an axis' actuator the port from is nearest to:

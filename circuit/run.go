@@ -49,24 +49,26 @@ func Run(ctx context.Context, c *Compiled, params []float64, s *duty.Series, con
 // run is the workspace of one call.
 type run struct {
 	*Compiled
-	models  []model
-	solver  *balance.Solver
-	ev      eval
-	step    step
-	book    booking
-	series  *duty.Series
-	sample  Sample
-	cert    Certificate
-	state   State
-	volumes []float64
-	slip    []float64 // leakage of each actuator, m³/s per Pa
-	topLoad []float64
-	haste   float64 // by how much axes move faster than asked; see approach
+	models   []model
+	solver   *balance.Solver
+	ev       eval
+	step     step
+	book     booking
+	series   *duty.Series
+	sample   Sample
+	cert     Certificate
+	state    State
+	volumes  []float64
+	slip     []float64 // leakage of each actuator, m³/s per Pa
+	topLoad  []float64
+	params   []float64
+	switches []switching
+	haste    float64 // by how much axes move faster than asked; see approach
 	scales
 }
 
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
-	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s}
+	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
 	x, fix := make([]float64, c.n), make([]float64, c.nfix)
 	r.ev = eval{x: x, fix: fix, gfix: make([]float64, c.nfix), n: c.n}
@@ -155,31 +157,29 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 	copy(r.state.speed, st.speed)
 	good := append([]float64(nil), x...)
 	lost := 0
-	for k := range r.series.T {
-		if k&255 == 0 && ctx.Err() != nil {
-			return r.state, r.cert, ctx.Err()
-		}
-		r.begin(k)
-		if !warm {
-			r.cold(0, x)
-			warm = true
-		}
-		res := r.solver.Solve(r, x, len(coldStarts), r.cold)
-		if !res.Solved() {
-			res = r.approach(k, x, good)
-		}
+	r.beginSlow(st)
+	// One solved, booked and handed over point in time, at a share of the way from the step before.
+	point := func(k int, share float64) error {
+		res := r.solve(k, share, x, good, warm)
+		warm = true
 		r.certify(k, res)
 		if res.Solved() {
 			lost = 0
 			copy(good, x)
 		} else if lost++; lost >= lostSteps {
-			return r.state, r.cert, fmt.Errorf("%w: %d time steps in a row, the last at %g s, worst at %s (%s)", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0].Where, r.cert.Unsolved[0].Residual)
+			return fmt.Errorf("%w: %d time steps in a row, the last at %g s, worst at %s (%s)", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0].Where, r.cert.Unsolved[0].Residual)
 		}
 		r.report(k, !res.Solved())
 		if !res.Solved() {
 			copy(x, good)
 		}
-		if err := to.Sample(&r.sample); err != nil {
+		return to.Sample(&r.sample)
+	}
+	for k := range r.series.T {
+		if k&255 == 0 && ctx.Err() != nil {
+			return r.state, r.cert, ctx.Err()
+		}
+		if err := r.through(k, x, good, point); err != nil {
 			return r.state, r.cert, err
 		}
 	}
@@ -187,16 +187,29 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 	return r.state, r.cert, nil
 }
 
+// solve balances a point in time.
+func (r *run) solve(k int, share float64, x, good []float64, warm bool) balance.Result {
+	r.begin(k, share)
+	if !warm {
+		r.cold(0, x)
+	}
+	res := r.solver.Solve(r, x, len(coldStarts), r.cold)
+	if !res.Solved() {
+		res = r.approach(k, share, x, good)
+	}
+	return res
+}
+
 // approach solves a step that withstood all else by way of easier ones: the axes
 // move faster at first, where throttling edges are well open, and slow down to
 // what is asked in steps of half an order of magnitude.
-func (r *run) approach(k int, x, good []float64) balance.Result {
+func (r *run) approach(k int, share float64, x, good []float64) balance.Result {
 	defer func() { r.haste = 1 }()
 	copy(x, good)
 	var res balance.Result
 	for _, haste := range [...]float64{1000, 300, 100, 30, 10, 3, 1} {
 		r.haste = haste
-		r.begin(k)
+		r.begin(k, share)
 		res = r.solver.Solve(r, x, len(coldStarts), r.cold)
 	}
 	if res.Solved() {
@@ -205,21 +218,33 @@ func (r *run) approach(k int, x, good []float64) balance.Result {
 	return res
 }
 
-// begin sets the demands of step k and lets every block prepare.
-func (r *run) begin(k int) {
+// between reads a column at a share of the way from the step before k to k.
+func between(v []float64, k int, share float64) float64 {
+	if v == nil {
+		return 0
+	}
+	if share >= 1 || k == 0 {
+		return v[k]
+	}
+	return v[k-1] + share*(v[k]-v[k-1])
+}
+
+// begin sets the demands at a share of the way from the step before to step k, 1 for
+// the step itself, and lets every block prepare.
+func (r *run) begin(k int, share float64) {
 	s := &r.step
 	s.k, s.standing = k, true
+	s.t = between(r.series.T, k, share)
+	s.dt = 0
+	if r.state.begun {
+		s.dt = math.Max(0, s.t-r.state.lastT)
+	}
 	for i := range s.axes {
 		a, d := &s.axes[i], &r.series.Axes[i]
 		*a = axisStep{given: d.Given, standing: d.Standing[k]}
-		if d.Load != nil {
-			a.load = d.Load[k]
-		}
-		if d.Command != nil {
-			a.command = d.Command[k]
-		}
-		if d.Speed != nil {
-			a.demand, a.accel = d.Speed[k], d.Accel[k]
+		a.load, a.command, a.demand = between(d.Load, k, share), between(d.Command, k, share), between(d.Speed, k, share)
+		if d.Accel != nil {
+			a.accel = d.Accel[k]
 		}
 		if h := r.haste; h > 1 { // at most a third of the top speed
 			a.demand *= math.Max(1, math.Min(h, r.series.Axes[i].Top/(3*math.Abs(a.demand)+1e-300)))
@@ -310,7 +335,7 @@ func (r *run) certify(k int, res balance.Result) {
 	c.Unbalanced++
 	if len(c.Unsolved) < 8 {
 		w := res.Worst
-		c.Unsolved = append(c.Unsolved, Unsolved{T: r.series.T[k], Where: r.rows[w].where, Residual: r.residual(w), Tried: balance.Tried()})
+		c.Unsolved = append(c.Unsolved, Unsolved{T: r.step.t, Where: r.rows[w].where, Residual: r.residual(w), Tried: balance.Tried()})
 	}
 }
 
@@ -325,8 +350,8 @@ func (r *run) residual(i int) string {
 	}
 }
 
-// report books the step into the sample.
-func (r *run) report(k int, unbalanced bool) {
+// bookAll books the point that was balanced last: signals, powers, slow states.
+func (r *run) bookAll() {
 	b := &r.book
 	clear(b.pow)
 	clear(b.shaft)
@@ -349,7 +374,18 @@ func (r *run) report(k int, unbalanced bool) {
 	for _, p := range r.portP {
 		b.sig[p.signal] = b.pa(p.node)
 	}
-	r.voids(b)
+	copy(b.next, r.state.slow)
+	for _, m := range r.models {
+		if s, ok := m.(slowModel); ok {
+			s.advance(b)
+		}
+	}
+}
+
+// report books the step into the sample and takes its states over.
+func (r *run) report(k int, unbalanced bool) {
+	r.bookAll()
+	r.voids(&r.book)
 	r.axesNow(k, unbalanced)
 }
 
@@ -368,12 +404,9 @@ func (r *run) voids(b *booking) {
 
 func (r *run) axesNow(k int, unbalanced bool) {
 	s := &r.sample
-	dt := 0.0
-	if r.state.begun { // a series that starts before the last one ended is another one
-		dt = math.Max(0, r.series.T[k]-r.state.lastT)
-	}
+	dt := r.step.dt // 0 where a series starts before the last one ended: it is another one
 	r.state.begun = true
-	s.T, s.Standing, s.Holding, s.Driving = r.series.T[k], r.step.standing, false, false
+	s.T, s.Standing, s.Holding, s.Driving = r.step.t, r.step.standing, false, false
 	s.Stopped, s.Unbalanced = r.step.off(), unbalanced
 	for i := range r.axes {
 		a := &r.step.axes[i]
@@ -388,6 +421,7 @@ func (r *run) axesNow(k int, unbalanced bool) {
 		r.state.speed[i] = now.Speed
 	}
 	r.state.lastT = s.T
+	copy(r.state.slow, r.book.next)
 }
 
 // stillSpeed [m/s, rad/s] is a speed that nobody sees: a millimetre in a quarter of an hour.

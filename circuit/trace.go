@@ -110,6 +110,7 @@ type State struct {
 	x      []float64
 	travel []float64 // m or rad, by axis
 	speed  []float64 // m/s or rad/s, by axis
+	slow   []float64 // gas volumes, flywheel speeds, switch states
 	lastT  float64
 	begun  bool
 }

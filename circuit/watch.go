@@ -263,12 +263,13 @@ type Shortfall struct {
 	At         float64 // s, the worst moment
 }
 
-// Shortfalls lists the axes that were slower than asked.
-func (w *Watch) Shortfalls() []Shortfall {
+// Shortfalls lists the axes that were slower than asked, as the mean of the cycles watched.
+func (w *Watch) Shortfalls(cycles int) []Shortfall {
 	var out []Shortfall
 	for i, a := range w.axes {
 		if a.short > 0 {
-			out = append(out, Shortfall{w.c.axes[i].Name, a.short, a.lost, a.ratio, a.at})
+			k := 1 / float64(max(cycles, 1))
+			out = append(out, Shortfall{w.c.axes[i].Name, a.short * k, a.lost * k, a.ratio, a.at})
 		}
 	}
 	return out

@@ -22,6 +22,7 @@ func (w *Watch) Findings() []Finding {
 	w.torques(f)
 	w.motions(f)
 	w.reliefs(f)
+	w.accumulators(f)
 	for i, v := range w.voids {
 		if v.worst > 0.01*units.LitrePerMinute {
 			f.add(Warns, nil, "", v.t, "%s runs empty: %s are missing at %s. Feed it through a make-up check valve, or hold the load back with a counterbalance valve", w.c.nodes[i].name, show(v.worst, units.Flow), clock(v.t))
@@ -153,6 +154,30 @@ func (w *Watch) reliefs(f *findings) {
 	for _, r := range w.reds {
 		if share := r.open / math.Max(w.span, 1e-12); share > 0.02 {
 			f.add(Note, r.b, "", 0, "open for %s of the cycle, %s of it while an axis moves: what passes it is lost as heat. Never raise a relief setting to gain speed", units.Format(share, units.Percent, 2), units.Format(r.work/math.Max(r.open, 1e-12), units.Percent, 2))
+		}
+	}
+}
+
+// accumulators compares the pressures an accumulator saw with its pre-charge: a bladder
+// is usually kept between 1.1 and 4 times it, absolute (common practice; its maker's
+// limits come first).
+func (w *Watch) accumulators(f *findings) {
+	const atm = units.AtmosphericPressure
+	for i, s := range w.c.signals {
+		b := w.c.circuit.Block(s.Block)
+		if b == nil || b.Kind != kindAccumulator || s.What != "p" {
+			continue
+		}
+		p0 := (w.value(b, "precharge") + atm) * w.value(b, "gas_temperature") / 293.15
+		lo, hi := w.ext[i].min+atm, w.ext[i].max+atm
+		switch {
+		case lo <= p0*1.0001:
+			f.add(Warns, b, "precharge", w.ext[i].tMin, "it runs empty: the pressure falls to its pre-charge of %s; lower the pre-charge or the band", show(p0-atm, units.Pressure))
+		case lo < 1.1*p0:
+			f.add(Note, b, "precharge", w.ext[i].tMin, "its lowest pressure %s is less than 1.1 times the pre-charge %s, both absolute; a bladder may strike its valve", show(lo-atm, units.Pressure), show(p0-atm, units.Pressure))
+		}
+		if hi > 4*p0 {
+			f.add(Note, b, "precharge", w.ext[i].tMax, "its highest pressure %s is more than 4 times the pre-charge %s, both absolute; the pre-charge may be lost", show(hi-atm, units.Pressure), show(p0-atm, units.Pressure))
 		}
 	}
 }

@@ -6,7 +6,6 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/figures"
-	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
 )
@@ -16,7 +15,7 @@ import (
 const (
 	drawnMost  = 1.7
 	drawnLeast = 1.15
-	drawnSmall = 0.8 // below, the reader is told to magnify
+	drawnSmall = 0.8 // a circuit that needs less is drawn smaller than the others
 )
 
 // Room about a drawn circuit [mm].
@@ -24,81 +23,6 @@ const (
 	drawnGap = 1.5
 	symbols  = "Symbols based on ISO 1219-1."
 )
-
-// instant is the moment at which all circuits are drawn.
-type instant struct {
-	of   *audit.CircuitRun // whose power is largest then; nil = nothing is solved
-	duty int               // its number
-	t    float64           // s
-}
-
-// nearMost is the share of the largest power that counts as that power: the largest
-// value itself often stands in a ramp that lasts for hundredths of a second.
-const nearMost = 0.95
-
-// mostDrawn finds where the circuit as found, or, where none is solved, the first
-// circuit that is, draws most power: the middle of the longest stretch near it.
-func mostDrawn(s *audit.Solution) instant {
-	for _, proposal := range []bool{false, true} {
-		for _, c := range s.Circuits {
-			at := instant{}
-			for i, d := range c.Duties {
-				if c.Proposal == proposal && d.Balance != nil && d.Plot != nil &&
-					(at.of == nil || d.Balance.PeakSupply > at.of.Duties[at.duty].Balance.PeakSupply) {
-					at = instant{of: c, duty: i}
-				}
-			}
-			if at.of != nil {
-				at.t = middleOfMost(at.of.Duties[at.duty])
-				return at
-			}
-		}
-	}
-	return instant{}
-}
-
-// middleOfMost is the middle of the longest stretch in which a run draws nearMost of
-// its largest power, or the time of the largest power where there is no such stretch.
-// Courses are read after a step; where power falls in one, the time is just before it.
-func middleOfMost(run *audit.DutyRun) float64 {
-	limit := nearMost * run.Balance.PeakSupply
-	mid, longest, from := run.Balance.PeakSupplyAt, 0.0, 0.0
-	t, v := total(run.Plot, func(ch circuit.Channel) bool { return ch.Role == circuit.Supply })
-	for i := range t {
-		if v[i] < limit {
-			continue
-		}
-		if i == 0 || v[i-1] < limit {
-			from = t[i]
-		}
-		if length := t[i] - from; length > longest {
-			mid, longest = from+length/2, length
-		}
-	}
-	if before := math.Nextafter(mid, math.Inf(-1)); drawnAt(run.Plot, mid) < limit && drawnAt(run.Plot, before) >= limit {
-		return before
-	}
-	return mid
-}
-
-// drawnAt is the power drawn at time t [W].
-func drawnAt(p *audit.Plot, t float64) float64 {
-	sum := 0.0
-	for i, c := range p.Channels {
-		if c.Role == circuit.Supply {
-			sum += p.Powers[i].At(t)
-		}
-	}
-	return sum
-}
-
-// run returns the duty of a circuit that is drawn, nil where it is not solved.
-func (at instant) run(c *audit.CircuitRun) *audit.DutyRun {
-	if at.of == nil || at.duty >= len(c.Duties) || c.Duties[at.duty].Balance == nil || c.Duties[at.duty].Plot == nil {
-		return nil
-	}
-	return c.Duties[at.duty]
-}
 
 // drawn is a circuit ready for the page.
 type drawn struct {
@@ -108,6 +32,7 @@ type drawn struct {
 	state *figures.SheetState
 	notes []string // between its name and the drawing
 	w, h  float64  // modules
+	k     float64  // mm a module
 }
 
 // drawings are all circuits at one instant, on common scales.
@@ -117,7 +42,7 @@ type drawings struct {
 	scales figures.SheetScales
 	intro  string
 	share  int     // how many share a page at the least
-	k      float64 // mm a module
+	k      float64 // mm a module, of all that are not too large for it
 }
 
 // drawings lays all circuits out, once for all trials of the report.
@@ -141,9 +66,6 @@ func (l *layout) drawings() *drawings {
 	d.scales = figures.ScalesOf(runs...)
 	d.intro = l.drawnIntro(d.at)
 	l.fitDrawings(d)
-	if d.k < drawnSmall {
-		d.intro += " The circuits are large; magnify the page to read them."
-	}
 	l.drawn = d
 	return d
 }
@@ -198,25 +120,39 @@ func (l *layout) drawnNote(at instant, d drawn) string {
 }
 
 // fitDrawings chooses one scale for all circuits: the largest at which two share a page,
-// or, where that is too small to read, at which each fits a page.
+// or, where that is too small to read, at which each fits a page. A circuit that is too
+// large for either has a scale of its own.
 func (l *layout) fitDrawings(d *drawings) {
 	_, head := l.headLines(1, string(Circuits))
-	room := bottom - top - head - 3.6 - l.introHeight(d)
-	note := l.small().line() + drawnGap
-	most, pair, one := drawnMost, math.Inf(1), math.Inf(1)
-	for i, c := range d.all {
-		most = min(most, fullW/c.w)
-		left := room - l.above(c)
-		one = min(one, max(left-note, (bottom-top)/3)/(figures.LegendHeight+c.h))
-		if i%2 == 0 && i+1 < len(d.all) {
-			next := d.all[i+1]
-			pair = min(pair, (left-l.above(next)-note)/(figures.LegendHeight+c.h+next.h))
+	room := bottom - top - head - 3.6 - l.introHeight(d) - l.small().line() - drawnGap
+	one, pair := drawnMost, math.Inf(1)
+	for i := range d.all {
+		c := &d.all[i]
+		c.k = l.ownScale(*c, room)
+		if c.k < drawnSmall {
+			c.notes = l.small().wrap(l.drawnNote(d.at, *c)+" Drawn smaller to fit the page, lines and discs as well; magnify to read it.", fullW)
+			c.k = l.ownScale(*c, room)
+			continue
 		}
+		one = min(one, c.k)
 	}
-	d.k, d.share = min(most, one), 1
-	if pair = min(pair, most); len(d.all) > 1 && pair >= drawnLeast {
-		d.k, d.share = min(d.k, pair), 2
+	for i := 0; i+1 < len(d.all); i += 2 {
+		a, b := d.all[i], d.all[i+1]
+		pair = min(pair, (room-l.above(a)-l.above(b))/(figures.LegendHeight+a.h+b.h))
 	}
+	d.k, d.share = one, 1
+	if len(d.all) > 1 && pair >= drawnLeast {
+		d.k, d.share = min(one, pair), 2
+	}
+	for i := range d.all {
+		d.all[i].k = min(d.all[i].k, d.k)
+	}
+}
+
+// ownScale is the largest scale at which a circuit fits a page beside room mm for what
+// is written about it.
+func (l *layout) ownScale(c drawn, room float64) float64 {
+	return min(fullW/c.w, max(room-l.above(c), (bottom-top)/3)/(figures.LegendHeight+c.h))
 }
 
 func (l *layout) introHeight(d *drawings) float64 {
@@ -230,8 +166,8 @@ func (l *layout) above(c drawn) float64 {
 }
 
 // below is the height of what stays with the name of a circuit.
-func (l *layout) below(d *drawings, c drawn) float64 {
-	return float64(len(c.notes))*l.small().line() + d.k*c.h
+func (l *layout) below(c drawn) float64 {
+	return float64(len(c.notes))*l.small().line() + c.k*c.h
 }
 
 // firstDrawings is the height of what stays with the heading of the section: what
@@ -240,7 +176,7 @@ func (l *layout) firstDrawings() float64 {
 	d := l.drawings()
 	h := l.introHeight(d) + d.k*figures.LegendHeight
 	for _, c := range d.all[:min(len(d.all), d.share)] {
-		h += l.above(c) + d.k*c.h
+		h += l.above(c) + c.k*c.h
 	}
 	return h
 }
@@ -260,11 +196,11 @@ func (l *layout) circuits() {
 	l.p.Pop()
 	l.y += d.k * figures.LegendHeight
 	for _, c := range d.all {
-		l.heading(2, c.c.Circuit.Name, l.below(d, c))
+		l.heading(2, c.c.Circuit.Name, l.below(c))
 		l.lines(side, c.notes, l.small())
-		l.need(d.k * c.h)
-		c.Draw(l.p, side+(fullW-d.k*c.w)/2, l.y, d.k, c.state, opt)
-		l.y += d.k*c.h + drawnGap
+		l.need(c.k * c.h)
+		c.Draw(l.p, side+(fullW-c.k*c.w)/2, l.y, c.k, c.state, opt)
+		l.y += c.k*c.h + drawnGap
 	}
 	l.para(symbols, l.small())
 }
