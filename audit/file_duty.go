@@ -204,6 +204,8 @@ func (r *reader) keep(d *duty.Duty, name string, values []float64) {
 
 var trackWords = []string{duty.Speed.String(), duty.Position.String(), duty.Load.String(), duty.Command.String()}
 
+var blockDims = map[duty.What]units.Dim{duty.Command: units.Ratio, duty.SetPressure: units.Pressure, duty.SetFlow: units.Flow}
+
 // column finds the quantity that a column of a duty holds.
 func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units.Dim, bool) {
 	if name == "t" {
@@ -216,16 +218,21 @@ func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units
 		return 0, false
 	}
 	for _, a := range r.file.Axes {
-		if a.Name == of {
-			return trackDim(a.Kind, w), true
+		if a.Name != of {
+			continue
 		}
+		if !w.OfAxis() {
+			r.bad(s, n, name, "%s is an axis; %s is for a pump with control: pq", of, what)
+			return 0, false
+		}
+		return trackDim(a.Kind, w), true
 	}
 	switch {
 	case r.axes[of]: // its kind was faulty, said already
-	case r.blocks[of] && w == duty.Command:
-		return units.Ratio, true
+	case r.blocks[of] && w.OfBlock():
+		return blockDims[w], true
 	case r.blocks[of]:
-		r.bad(s, n, name, "%s is a block; a block has a command only, %s is for an axis", of, what)
+		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, %s is for an axis", of, what)
 	default:
 		r.bad(s, n, name, "there is no axis or block %q%s", of, guess(of, r.axisNamesKnown()))
 	}

@@ -86,7 +86,7 @@ var wrongFiles = map[string][]fault{
 	"time_backwards":         {{8, "", "", "lasts -2 s"}, {8, "", "", "time runs backwards from 2 s to 0 s"}},
 	"track_length":           {{8, "", "ram.load", "has 1 values for 2 time stamps"}},
 	"track_no_quantity":      {{8, "", "ram.force", "is not a track; write t, or an axis and one of speed, position, load, command"}},
-	"track_of_block":         {{8, "", "RV1.load", "a block has a command only"}},
+	"track_of_block":         {{8, "", "RV1.load", "a block has a command, a set_pressure or a set_flow"}},
 	"track_unknown_axis":     {{8, "", "arm.load", `there is no axis or block "arm"; did you mean "ram"?`}},
 	"two_documents":          {{3, "", "", "a second document begins here"}},
 	"unit_of_other_quantity": {{14, "C1", "bore", `unit "bar" is not a unit of length`}},

@@ -22,11 +22,14 @@ const (
 // groups lists them in the order of the way from the mains to the load.
 var groups = []group{
 	{"electric motors and converters", []string{"electric_motor", "converter"}},
-	{"pumps and hydraulic motors", []string{"pump", "charge_pump", "motor"}},
+	{"combustion engines", []string{"engine"}},
+	{"pumps and hydraulic motors", []string{"pump", "charge_pump", "motor", "flow_divider", "gearbox"}},
 	{reliefGroup, []string{"relief"}},
-	{meteringGroup, []string{"valve", "compensator", "orifice", "counterbalance"}},
-	{"lines, filters and check valves", []string{"line", "filter", "check", "pilot_check", "shuttle", "junction"}},
-	{"cylinder friction", []string{"cylinder"}},
+	{"unloading and flushing", []string{"unloading", "unloading_pilot", "flushing"}},
+	{meteringGroup, []string{"valve", "section_6_3", "compensator", "flow_sharing", "orifice", "throttle_check",
+		"flow_control", "flow_control_3", "reducing", "sequence", "counterbalance"}},
+	{"lines, filters and check valves", []string{"line", "filter", "cooler", "flow_point", "check", "pilot_check", "shuttle", "shuttle_flow", "junction"}},
+	{"cylinder friction", []string{"cylinder", "double_rod", "plunger"}},
 }
 
 const otherGroup = "other blocks"
@@ -34,7 +37,7 @@ const otherGroup = "other blocks"
 // groupOf names the group that a loss belongs to. The relief valve inside a charge
 // pump counts as a relief valve.
 func groupOf(c *circuit.Circuit, l LossRow) string {
-	if strings.Contains(l.Kind, "relief") {
+	if strings.Contains(l.Kind, "relief") || strings.Contains(l.Kind, "relieving") {
 		return reliefGroup
 	}
 	if b := c.Block(l.Block); b != nil {

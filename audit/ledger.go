@@ -204,7 +204,7 @@ func modeOf(s *circuit.Sample) mode {
 }
 
 // ShaftSignals finds the signals whose sum is the shaft power of the prime movers:
-// those of the electric motors, or, where none reports one, of all pumps.
+// those of the electric motors and engines, or, where none reports one, of all pumps.
 func ShaftSignals(c *circuit.Circuit, signals []circuit.Signal) []int {
 	of := func(kinds ...string) (out []int) {
 		for i, s := range signals {
@@ -220,7 +220,7 @@ func ShaftSignals(c *circuit.Circuit, signals []circuit.Signal) []int {
 		}
 		return out
 	}
-	if m := of("electric_motor"); len(m) > 0 {
+	if m := of("electric_motor", "engine"); len(m) > 0 {
 		return m
 	}
 	return of("pump", "charge_pump")

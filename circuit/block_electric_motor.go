@@ -12,7 +12,7 @@ import (
 // machines on the shaft ask it for torque.
 var electricMotorKind = &Kind{
 	Name: kindElectricMotor, Title: "Electric motor", Group: "supply",
-	Text: "Induction motor. It turns at constant speed, or, behind a frequency converter, at the speed that makes an axis move as the duty says (`follows`) or that a track commands. Without a converter what comes back goes to the mains.",
+	Text: "Induction motor. It turns at constant speed, or, behind a frequency converter, at the speed that makes an axis move as the duty says (`follows`) or that a track commands. With a `torque_limit` it slows down when the machines on its shaft ask for more. Without a converter what comes back goes to the mains.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},
 		{Name: "E", Type: Electric, Optional: true, Text: "terminals; unconnected it hangs on the mains"},
@@ -25,12 +25,14 @@ var electricMotorKind = &Kind{
 		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its speed is found from the motion of this axis"},
 		{Key: "max_speed", Title: "Highest speed", Symbol: "n2", Dim: units.AngularSpeed, Above: true, Max: 2000, Text: "of a motor of variable speed; default: its speed"},
 		{Key: "both_directions", Title: "Both directions", Type: Choice, Default: "no", Choices: []string{"no", "yes"}, Text: "a motor of variable speed may turn backwards"},
+		{Key: "torque_limit", Title: "Torque limit", Symbol: "TL", Dim: units.Torque, Above: true, Max: 1e5, Text: "most it gives, as its converter or its pull-out torque limits it; without one it gives what is asked"},
 		{Key: "fixed_share", Title: "Fixed losses", Symbol: "kf", Dim: units.Ratio, Default: "0.35", Origin: Assumed, Source: "iron, friction and windage at full speed as share of the rated loss, common practice", Max: 1, Text: "share of the rated loss that does not depend on load"},
 		{Key: "loss", Title: "Loss law", Type: Choice, Default: "torque_speed", Choices: []string{"torque_speed", "power"}, Text: "torque_speed; or power, the older law in shaft power alone, which knows no loss of holding torque at standstill"},
 	},
 	Losses: []LossKind{{"electric motor", ToAir, "P = PV·(kf·|ω|/ωN + (1 − kf)·(T/TN)²), PV = PN·(1/ηN − 1)"}},
 	Equations: []Equation{
 		{"PV = PN·(1/ηN − 1); loss = PV·(kf·|ω|/ωN + (1 − kf)·(T/TN)²)", "loss separation, e.g. IEC 60034-2-1; fixed share assumed"},
+		{"with a torque limit: ω = set speed while Σ T <= TL, else Σ T = TL", "complementarity of set speed and limit; the current at the limit is not described"},
 		{"older law: loss = PV·(kf + (1 − kf)·(P/PN)²)", "part-load law in shaft power"},
 	},
 	Symbol: func(*Block) string { return "electric_motor" },
@@ -54,6 +56,9 @@ type electricModel struct {
 	polarity                        polarity
 	back                            bool
 	power                           bool // older loss law
+	limit                           int  // parameter, −1 none
+	sigma                           slot // friction of the machines on a limited shaft
+	torque                          slot // unknown of a limited motor that follows an axis
 	el                              int  // electric node, −1 on the mains
 	rated, eta, n, nMax, fixedShare int
 	loss, supply                    int
@@ -64,6 +69,8 @@ type electricModel struct {
 	w, lo, hi   float64
 	tracking    bool
 	dir, wanted float64
+	most, tPer  float64 // scaled torque limit; N·m of one scaled unit
+	way         float64 // in which it is told to turn
 	off         bool
 }
 
@@ -73,9 +80,10 @@ func buildElectricMotor(k *compiler, b *Block) model {
 		loss: k.channel(Loss, b, "electric motor"), supply: -1,
 		sigW: k.signal(b, "w", "speed", units.AngularSpeed), sigT: k.signal(b, "T", "shaft torque", units.Torque),
 		sigShaft: k.signal(b, "shaft", "shaft power", units.Power), sigEl: k.signal(b, "electric", "power at the terminals", units.Power),
+		limit: k.param(b, "torque_limit"), torque: noSlot,
 		back: KindNamed(b.Kind).WordOf(b, "both_directions") == "yes", power: KindNamed(b.Kind).WordOf(b, "loss") == "power",
 	}
-	m.speed = k.shafts[m.shaft].speed
+	m.speed, m.sigma = k.shafts[m.shaft].speed, k.shafts[m.shaft].sigma
 	if n := k.of[PortRef{b.ID, "E"}]; n != nil && len(n.ports) > 1 {
 		m.el = k.elOf[n.id]
 	} else {
@@ -86,6 +94,9 @@ func buildElectricMotor(k *compiler, b *Block) model {
 		m.ctl, m.axis = followsAxis, k.axisOf[follows(b)]
 		m.vel, m.hold = k.movers[m.axis].speed, k.movers[m.axis].hold
 		m.polarity = k.shaftPolarity(b, m.axis)
+		if m.limit >= 0 && m.sigma >= 0 {
+			m.torque = k.unknown(otherRow, b.ID+" torque")
+		}
 	case KindNamed(b.Kind).WordOf(b, "control") == "commanded":
 		m.ctl = takesTrack
 	}
@@ -104,7 +115,9 @@ func (m *electricModel) bind(b *binding) {
 	if m.back {
 		m.lo = -m.hi
 	}
-	if m.speed >= 0 {
+	m.tPer = size * b.scales.p
+	m.most = b.get(m.limit, 0) / m.tPer
+	if m.speed >= 0 && m.limit < 0 {
 		b.bound.Weight[m.speed] = 10
 	}
 }
@@ -114,38 +127,67 @@ func (m *electricModel) begin(s *step) {
 	switch m.ctl {
 	case heldConstant:
 		if m.off {
-			s.set(m.speed, 0)
+			m.turn(s, 0)
 		} else {
-			s.set(m.speed, m.w)
+			m.turn(s, m.w)
 		}
 	case takesTrack:
 		v := 1.0
-		if tr := s.commands[m.id]; tr != nil {
-			v = tr[s.k]
+		if c, ok := s.command(m.id, duty.Command); ok {
+			v = c
 		}
 		if m.off {
 			v = 0
 		}
-		s.set(m.speed, math.Max(m.lo, v*m.hi))
+		m.turn(s, math.Max(m.lo, v*m.hi))
 	case followsAxis:
 		a := &s.axes[m.axis]
 		m.dir = m.polarity.sign(a)
 		switch {
 		case m.off, a.standing && m.hold != "pump":
-			s.set(m.speed, 0)
+			m.turn(s, 0)
 		case a.given != duty.MotionLoad:
-			s.set(m.speed, math.Max(m.lo, m.dir*a.command*m.hi))
+			m.turn(s, math.Max(m.lo, m.dir*a.command*m.hi))
 		default:
 			s.bounds(m.speed, m.lo, m.hi)
 			m.tracking, m.wanted = true, a.scaledDemand
+			if m.torque >= 0 {
+				s.bounds(m.torque, -m.most, m.most)
+				s.bounds(m.sigma, -1, 1)
+			}
 		}
 	}
 }
 
+// turn tells the motor its speed, which a torque limit may keep it from.
+func (m *electricModel) turn(s *step, w float64) {
+	if m.limit < 0 {
+		s.set(m.speed, w)
+		return
+	}
+	m.way = 0
+	if w != 0 {
+		m.way = sign(w)
+	}
+	s.bounds(m.speed, math.Min(0, w), math.Max(0, w))
+	s.set(m.sigma, m.way)
+	if m.torque >= 0 {
+		s.set(m.torque, 0)
+	}
+}
+
 func (m *electricModel) eval(e *eval) {
-	if m.tracking {
+	switch {
+	case m.tracking && m.torque >= 0:
+		e.add(m.speed, -e.val(m.torque))
+		e.d(m.speed, m.torque, -1)
+		e.add(m.torque, m.dir*(e.val(m.vel)-m.wanted)) // more torque, more speed
+		e.d(m.torque, m.vel, m.dir)
+	case m.tracking:
 		e.add(m.speed, m.dir*(e.val(m.vel)-m.wanted))
 		e.d(m.speed, m.vel, m.dir)
+	case m.limit >= 0:
+		e.add(m.speed, -m.way*m.most)
 	}
 }
 
@@ -154,6 +196,9 @@ func (m *electricModel) book(*booking) {} // after all machines: bookShaft
 // bookShaft books the motor once the torque of its shaft is summed.
 func (m *electricModel) bookShaft(k *booking) {
 	w, T := k.val(m.speed)*m.wPer, k.shaft[m.shaft].torque
+	if m.limit >= 0 && math.Abs(k.val(m.speed)) <= stalled*m.hi { // it gives what it can
+		T = math.Max(-m.most*m.tPer, math.Min(m.most*m.tPer, T))
+	}
 	P := T * w
 	loss := 0.0
 	switch {
@@ -178,5 +223,8 @@ func (m *electricModel) bookShaft(k *booking) {
 func (m *electricModel) cold(s *step, level int, x []float64) {
 	if m.speed >= 0 {
 		x[m.speed] = (m.lo + m.hi) / 2
+		if m.limit >= 0 && !m.tracking {
+			x[m.speed] = m.w
+		}
 	}
 }

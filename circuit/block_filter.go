@@ -28,10 +28,13 @@ var filterKind = &Kind{
 		}
 		return "filter"
 	},
-	build: func(k *compiler, b *Block) model {
-		return &filterModel{A: k.node(b, "A"), B: k.node(b, "B"), q: k.unknown(otherRow, b.ID), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), share: k.param(b, "linear_share"), by: k.param(b, "bypass"),
-			qA: k.port(b, "A"), qB: k.port(b, "B"), loss: k.channel(Loss, b, "filter")}
-	},
+	build: func(k *compiler, b *Block) model { return k.strainer(b, "filter") },
+}
+
+// strainer wires a filter, or a cooler, which resists in the same way.
+func (k *compiler) strainer(b *Block, loss string) *filterModel {
+	return &filterModel{A: k.node(b, "A"), B: k.node(b, "B"), q: k.unknown(otherRow, b.ID), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), share: k.param(b, "linear_share"), by: k.param(b, "bypass"),
+		qA: k.port(b, "A"), qB: k.port(b, "B"), loss: k.channel(Loss, b, loss)}
 }
 
 type filterModel struct {

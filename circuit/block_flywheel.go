@@ -22,7 +22,7 @@ var flywheelKind = &Kind{
 	build: func(k *compiler, b *Block) model {
 		m := &flywheelModel{k: k.Compiled, shaft: k.shaftAt(b), inertia: k.param(b, "inertia"), first: k.param(b, "start_speed"),
 			sigW: k.signal(b, "w", "speed", units.AngularSpeed), stored: k.channel(Stored, b, "flywheel")}
-		m.speed = k.shafts[m.shaft].speed
+		m.speed, m.row = k.shafts[m.shaft].speed, k.shafts[m.shaft].row
 		m.free = k.shafts[m.shaft].free
 		m.state = k.newSlow(slowState{block: b.ID, name: "speed", start: func(p []float64) float64 { return p[m.first] }, scale: func([]float64) float64 { return 100 }})
 		return m
@@ -32,7 +32,7 @@ var flywheelKind = &Kind{
 type flywheelModel struct {
 	k              *Compiled
 	shaft          int
-	speed          slot
+	speed, row     slot
 	free           bool
 	inertia, first int
 	sigW, stored   int
@@ -67,15 +67,17 @@ func (m *flywheelModel) eval(e *eval) {
 		return
 	}
 	k := m.J * m.wPer / m.dt / m.tPer
-	e.add(m.speed, k*(e.val(m.speed)-m.was))
-	e.d(m.speed, m.speed, k)
+	e.add(m.row, k*(e.val(m.speed)-m.was))
+	e.d(m.row, m.speed, k)
 }
 
 func (m *flywheelModel) book(k *booking) {
 	w := k.val(m.speed) * m.wPer
 	k.put(m.sigW, w)
 	if m.free && m.dt > 0 {
-		k.pow[m.stored] += m.J * (w - m.was*m.wPer) / m.dt * w
+		torque := m.J * (w - m.was*m.wPer) / m.dt
+		k.pow[m.stored] += torque * w
+		k.shaft[m.shaft].torque += torque
 	}
 }
 

@@ -115,12 +115,14 @@ func (m *motorModel) eval(e *eval) {
 	if m.axis < 0 || m.speed < 0 {
 		return
 	}
-	e.add(m.speed, m.load+e.val(m.sigma)*m.lost)
-	e.d(m.speed, m.sigma, m.lost)
+	e.add(m.row, m.load+e.val(m.sigma)*m.lost)
+	e.d(m.row, m.sigma, m.lost)
 }
 
-func (m *motorModel) book(k *booking) {
-	m.bookMachine(k)
+func (m *motorModel) book(k *booking) { m.bookMachine(k) }
+
+// bookShaft books the axis once the torque of its shaft is summed.
+func (m *motorModel) bookShaft(k *booking) {
 	if m.axis < 0 {
 		return
 	}

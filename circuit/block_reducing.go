@@ -60,12 +60,12 @@ func reducingSymbol(b *Block) string {
 }
 
 type reducingModel struct {
-	way                      regulated
-	back                     returnCheck
-	T, out                   slot // out: flow from A to T when relieving
-	set, qN, dN, step, over  int
-	qP, qA, qT, loss, spill  int
-	held, opens, slope       float64
+	way                     regulated
+	back                    returnCheck
+	T, out                  slot // out: flow from A to T when relieving
+	set, qN, dN, step, over int
+	qP, qA, qT, loss, spill int
+	held, opens, slope      float64
 }
 
 func (m *reducingModel) clone() model { c := *m; return &c }

@@ -21,11 +21,11 @@ var shuttleFlowKind = &Kind{
 	Losses: []LossKind{{"shuttle", ToOil, "P = (pX − pA)·qX + (pY − pA)·qY"}},
 	Equations: []Equation{
 		{"s = clip(1/2 + (pX − pY)/Δpb, 0, 1)", "ball between two seats, smooth within the band"},
-		{"X to A: q = s·qN·√(Δp/ΔpN); Y to A: q = (1 − s)·qN·√(Δp/ΔpN)", "orifice law from the nominal point"},
+		{"X to A: Δp·s = ΔpN·((q/qN)² + (1 − s)·q/qN); Y to A with 1 − s in place of s", "orifice law at the seats' ends; throttling between is our simplification"},
 	},
 	Symbol: func(*Block) string { return "shuttle_flow" },
 	build: func(k *compiler, b *Block) model {
-		return &shuttleFlowModel{X: k.node(b, "X"), Y: k.node(b, "Y"), A: k.node(b, "A"), q1: k.unknown(passRow, b.ID), q2: k.unknown(passRow, b.ID), s: k.unknown(otherRow, b.ID+" ball"),
+		return &shuttleFlowModel{X: k.node(b, "X"), Y: k.node(b, "Y"), A: k.node(b, "A"), q1: k.unknown(otherRow, b.ID), q2: k.unknown(otherRow, b.ID), s: k.unknown(otherRow, b.ID+" ball"),
 			qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), band: k.param(b, "band"),
 			qX: k.port(b, "X"), qY: k.port(b, "Y"), qA: k.port(b, "A"), loss: k.channel(Loss, b, "shuttle")}
 	},
@@ -36,7 +36,7 @@ type shuttleFlowModel struct {
 	qN, dN, band       int
 	qX, qY, qA, loss   int
 	t                  throat
-	width              float64
+	width, shut        float64 // band; linear resistance as a way closes
 }
 
 func (m *shuttleFlowModel) clone() model { c := *m; return &c }
@@ -44,6 +44,7 @@ func (m *shuttleFlowModel) clone() model { c := *m; return &c }
 func (m *shuttleFlowModel) bind(b *binding) {
 	m.t = throatOf(b.p[m.qN]/b.scales.q, b.p[m.dN]/b.scales.p)
 	m.width = b.p[m.band] / b.scales.p
+	m.shut = (b.p[m.dN] / b.scales.p) / (b.p[m.qN] / b.scales.q)
 	b.bound.Lo[m.s], b.bound.Hi[m.s] = 0, 1
 }
 
@@ -52,12 +53,13 @@ func (m *shuttleFlowModel) begin(*step) {}
 // side adds the way from one side, open by u, which rises with s by du.
 func (m *shuttleFlowModel) side(e *eval, from, q slot, u, du float64) {
 	v := e.branch(from, m.A, q)
-	full, slope := m.t.flow(e.val(from) - e.val(m.A))
-	e.add(q, v-u*full)
-	e.d(q, q, 1)
-	e.d(q, from, -u*slope)
-	e.d(q, m.A, u*slope)
-	e.d(q, m.s, -du*full)
+	r, dr := m.t.at(v)
+	dp := e.val(from) - e.val(m.A)
+	e.add(q, r+(1-u)*m.shut*v+minResistance*v-u*dp)
+	e.d(q, q, dr+(1-u)*m.shut+minResistance)
+	e.d(q, from, -u)
+	e.d(q, m.A, u)
+	e.d(q, m.s, -du*(m.shut*v+dp))
 }
 
 func (m *shuttleFlowModel) eval(e *eval) {

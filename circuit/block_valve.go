@@ -22,6 +22,7 @@ var valveKind = &Kind{
 		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its opening is found from the motion of this axis"},
 		{Key: "directs", Title: "Directs axis", Type: AxisRef, Text: "fully open in the direction of this axis"},
 		{Key: "centre", Title: "Centre", Type: Choice, Default: "closed", Choices: []string{"closed", "open", "tandem", "float"}, Text: "closed; open: all joined; tandem: P to T, A and B closed; float: A and B to T, P closed"},
+		{Key: "extend", Title: "Position that feeds A", Type: Choice, Default: "normal", Choices: []string{"normal", "regenerative"}, Text: "normal: P to A, B to T; regenerative: A and B both joined to P, so that a cylinder with its bore side at A extends fast, pushed by the rod area alone"},
 		{Key: "nominal_flow", Title: "Nominal flow per edge", Symbol: "qN", Dim: units.Flow, Need: true, Above: true, Max: 10, Text: "of each edge, fully open, at the nominal drop"},
 		{Key: "nominal_drop", Title: "Nominal drop per edge", Symbol: "ΔpN", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "proportional valves: 5 bar an edge, common practice", Above: true, Max: 200e5, Text: "of one edge at its nominal flow"},
 		{Key: "flow_PA", Title: "Nominal flow P to A", Symbol: "qPA", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
@@ -36,24 +37,33 @@ var valveKind = &Kind{
 		{"metering A-T", ToOil, "P = (pA − pT)·q"}, {"metering B-T", ToOil, "P = (pB − pT)·q"},
 		{"unloaded circulation", ToOil, "P = (pP − pT)·q in the centre"},
 	},
-	Equations: []Equation{{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open", "orifice law from the nominal point of the edge"}},
+	Equations: []Equation{{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open; regenerative: those are P-A and P-B", "orifice law from the nominal point of the edge"}},
 	Rating:    "rating",
 	Symbol: func(b *Block) string {
 		centre := b.Word("centre")
 		if centre == "" {
 			centre = "closed"
 		}
-		if b.Word("directs") != "" {
-			return "dcv_4_3_" + centre
+		name := "dcv_4_3_"
+		if b.Word("directs") == "" {
+			name += "prop_"
 		}
-		return "dcv_4_3_prop_" + centre
-	},
-	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
-		if follows(b) != "" && b.Word("directs") != "" {
-			bad(Stops, "directs", "it follows an axis and directs one; keep one of `follows` and `directs`")
+		if b.Word("extend") == "regenerative" {
+			name += "regen_"
 		}
+		return name + centre
 	},
-	build: buildValve,
+	check: checkValve,
+	build: func(k *compiler, b *Block) model {
+		m := newValve(k, b, "unloaded circulation")
+		return &m
+	},
+}
+
+func checkValve(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
+	if follows(b) != "" && b.Word("directs") != "" {
+		bad(Stops, "directs", "it follows an axis and directs one; keep one of `follows` and `directs`")
+	}
 }
 
 // leastOpening keeps a throttling valve from closing altogether, where nothing
@@ -82,6 +92,7 @@ type valveModel struct {
 	polarity   polarity
 	directs    bool
 	tracks     bool // it is the control that is found
+	regen      bool // feeding A joins B to P
 	centre     string
 	q          [4]slot
 	open       slot // opening of a valve that follows an axis
@@ -110,12 +121,13 @@ type branch struct {
 	on   bool
 }
 
-func buildValve(k *compiler, b *Block) model {
-	m := &valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, open: noSlot,
-		centre: KindNamed(b.Kind).WordOf(b, "centre"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), qC: k.param(b, "flow_centre"),
+// newValve makes the edges of a valve; around names the loss of what passes beside them.
+func newValve(k *compiler, b *Block, around string) valveModel {
+	m := valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, open: noSlot,
+		regen: KindNamed(b.Kind).WordOf(b, "extend") == "regenerative", centre: KindNamed(b.Kind).WordOf(b, "centre"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), qC: k.param(b, "flow_centre"),
 		per:  [edges]int{k.param(b, "flow_PA"), k.param(b, "flow_PB"), k.param(b, "flow_AT"), k.param(b, "flow_BT")},
 		sig:  [4]int{k.port(b, "P"), k.port(b, "A"), k.port(b, "B"), k.port(b, "T")},
-		sigU: k.signal(b, "u", "opening", units.Ratio), around: k.channel(Loss, b, "unloaded circulation")}
+		sigU: k.signal(b, "u", "opening", units.Ratio), around: k.channel(Loss, b, around)}
 	for i, name := range []string{"metering P-A", "metering P-B", "metering A-T", "metering B-T"} {
 		m.loss[i] = k.channel(Loss, b, name)
 	}
@@ -172,7 +184,11 @@ func (m *valveModel) begin(s *step) {
 	switch {
 	case m.dir > 0:
 		pick(0, m.P, m.A, m.full[edgePA], edgePA)
-		pick(1, m.B, m.T, m.full[edgeBT], edgeBT)
+		if m.regen {
+			pick(1, m.P, m.B, m.full[edgePB], edgePB)
+		} else {
+			pick(1, m.B, m.T, m.full[edgeBT], edgeBT)
+		}
 	case m.dir < 0:
 		pick(0, m.P, m.B, m.full[edgePB], edgePB)
 		pick(1, m.A, m.T, m.full[edgeAT], edgeAT)
@@ -214,8 +230,8 @@ func (m *valveModel) begin(s *step) {
 func (m *valveModel) position(s *step) {
 	m.dir, m.u, m.now = 0, 1, false
 	if m.axis < 0 {
-		if tr := s.commands[m.id]; tr != nil && math.Abs(tr[s.k]) >= duty.StandstillShare {
-			m.dir, m.u = sign(tr[s.k]), math.Abs(tr[s.k])
+		if v, ok := s.command(m.id, duty.Command); ok && math.Abs(v) >= duty.StandstillShare {
+			m.dir, m.u = sign(v), math.Abs(v)
 		}
 		return
 	}

@@ -124,11 +124,14 @@ const (
 	kindTank           = "tank"
 	kindPressureSource = "pressure_source"
 	kindElectricMotor  = "electric_motor"
+	kindEngine         = "engine"
 	kindConverter      = "converter"
 	kindPump           = "pump"
 	kindChargePump     = "charge_pump"
 	kindHydraulicMotor = "motor"
 	kindCylinder       = "cylinder"
+	kindDoubleRod      = "double_rod"
+	kindPlunger        = "plunger"
 	kindValve          = "valve"
 	kindRelief         = "relief"
 	kindCheck          = "check"
@@ -140,8 +143,23 @@ const (
 	kindLine           = "line"
 	kindFilter         = "filter"
 	kindJunction       = "junction"
+	kindFlowDivider    = "flow_divider"
+	kindGearbox        = "gearbox"
+	kindFlushing       = "flushing"
+	kindCooler         = "cooler"
+	kindPressurePoint  = "pressure_point"
+	kindFlowPoint      = "flow_point"
+	kindReducing       = "reducing"
+	kindSequence       = "sequence"
+	kindFlowControl    = "flow_control"
+	kindFlowControl3   = "flow_control_3"
+	kindThrottleCheck  = "throttle_check"
+	kindShuttleFlow    = "shuttle_flow"
+	kindFlowSharing    = "flow_sharing"
+	kindSection63      = "section_6_3"
 	kindAccumulator    = "accumulator"
 	kindUnloading      = "unloading"
+	kindUnloadingPilot = "unloading_pilot"
 	kindFlywheel       = "flywheel"
 )
 
@@ -164,11 +182,9 @@ func SymbolOf(c *Circuit, b *Block) string {
 		return name
 	}
 	_, of := netsOf(c)
-	if n := of[PortRef{b.ID, "shaft"}]; n != nil {
-		for _, p := range n.ports {
-			if o := c.Block(p.Block); o.Kind == kindElectricMotor && o.Word("both_directions") == "yes" {
-				return "pump_fixed_2"
-			}
+	for _, p := range trainPorts(c, of, b) {
+		if o := c.Block(p.Block); o.Kind == kindElectricMotor && o.Word("both_directions") == "yes" {
+			return "pump_fixed_2"
 		}
 	}
 	return name
@@ -192,23 +208,41 @@ func init() {
 		accumulatorKind,
 		flywheelKind,
 		electricMotorKind,
+		engineKind,
+		gearboxKind,
 		converterKind,
 		pumpKind,
 		chargePumpKind,
 		hydraulicMotorKind,
 		cylinderKind,
+		doubleRodKind,
+		plungerKind,
 		valveKind,
+		flowDividerKind,
+		flushingKind,
+		section63Kind,
 		reliefKind,
+		reducingKind,
+		sequenceKind,
 		unloadingKind,
+		unloadingPilotKind,
 		checkKind,
 		pilotCheckKind,
 		counterbalanceKind,
 		compensatorKind,
+		flowSharingKind,
 		orificeKind,
+		throttleCheckKind,
+		flowControlKind,
+		flowControl3Kind,
 		shuttleKind,
+		shuttleFlowKind,
 		lineKind,
 		filterKind,
 		junctionKind,
+		coolerKind,
+		pressurePointKind,
+		flowPointKind,
 	}
 	for _, k := range catalog {
 		for i := range k.Params {

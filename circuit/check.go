@@ -188,7 +188,7 @@ func (k *checker) rest() {
 	case Keep, Stop:
 	case Unload:
 		if !k.canUnload() {
-			k.say(Stops, nil, "pump_at_rest", "circuit %q unloads at rest, but nothing in it can: give a relief valve a vented pressure, a pump an unloaded_pressure, or a valve a tandem or open centre", k.c.Name)
+			k.say(Stops, nil, "pump_at_rest", "circuit %q unloads at rest, but nothing in it can: give a relief valve a vented pressure, a pump an unloaded_pressure, a valve a tandem or open centre, or use open-centre sections", k.c.Name)
 		}
 	case "":
 		k.say(Stops, nil, "pump_at_rest", "circuit %q does not say what its pumps do while everything stands: pump_at_rest: keep, unload or stop", k.c.Name)
@@ -203,7 +203,7 @@ func (k *checker) canUnload() bool {
 		_, vented := b.Values["vented"]
 		_, unloaded := b.Values["unloaded_pressure"]
 		centre := b.Word("centre")
-		if vented || unloaded || centre == "tandem" || centre == "open" {
+		if vented || unloaded || centre == "tandem" || centre == "open" || b.Kind == kindSection63 {
 			return true
 		}
 	}
@@ -226,15 +226,46 @@ func (k *checker) dutyOf(d *duty.Duty) {
 		if b == nil {
 			continue // of another circuit
 		}
-		if tr.What != duty.Command || (b.Kind != kindValve && KindNamed(b.Kind).WordOf(b, "control") != "commanded") || follows(b) != "" {
-			k.say(Stops, b, "control", "duty %q has a track %s.%s, but %s does not take commands; set control: commanded, or drop the track", d.Name, tr.Of, tr.What, b.ID)
-		}
+		k.takes(d, b, tr.What)
+	}
+	for i := range k.c.Blocks {
+		k.setPoints(d, &k.c.Blocks[i])
 	}
 	for _, a := range k.axes {
 		k.axisOf(d, a)
 	}
 	if d.Repeats {
 		k.closes(d)
+	}
+}
+
+// takes refuses a track that a block has no use for.
+func (k *checker) takes(d *duty.Duty, b *Block, w duty.What) {
+	control := KindNamed(b.Kind).WordOf(b, "control")
+	switch {
+	case w == duty.SetPressure || w == duty.SetFlow:
+		if !isPQ(b) {
+			k.say(Stops, b, "control", "duty %q has a track %s.%s, but only a pump with control: pq takes one; set that, or drop the track", d.Name, b.ID, w)
+		}
+	case w != duty.Command || (!isValve(b) && control != "commanded") || follows(b) != "":
+		k.say(Stops, b, "control", "duty %q has a track %s.%s, but %s does not take commands; set control: commanded, or drop the track", d.Name, b.ID, w, b.ID)
+	}
+}
+
+// isPQ reports whether a block is a pump that takes set pressure and set flow.
+func isPQ(b *Block) bool {
+	return b.Kind == kindPump && follows(b) == "" && KindNamed(b.Kind).WordOf(b, "control") == "pq"
+}
+
+// setPoints asks for set pressure and set flow of a pq pump, as tracks or numbers.
+func (k *checker) setPoints(d *duty.Duty, b *Block) {
+	if !isPQ(b) {
+		return
+	}
+	for _, w := range []duty.What{duty.SetPressure, duty.SetFlow} {
+		if _, ok := b.Values[w.String()]; !ok && d.Track(b.ID, w) == nil {
+			k.say(Stops, b, w.String(), "a pq pump needs its %s: give it a number, or duty %q a track %s.%s", w, d.Name, b.ID, w)
+		}
 	}
 }
 

@@ -71,7 +71,7 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 		return
 	}
 	act := movers[0]
-	if (act.Kind == kindCylinder) != (a.Kind == duty.Linear) {
+	if movesAlong(act.Kind) != (a.Kind == duty.Linear) {
 		k.say(Stops, act, "axis", "axis %s is %s, which a %s cannot be", a.Name, a.Kind, strings.ToLower(KindNamed(act.Kind).Title))
 	}
 	if len(follow) > 1 {
@@ -95,7 +95,7 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 // holding checks that what holds an axis fits what controls it.
 func (k *checker) holding(act, control *Block, direct []*Block) {
 	hold := KindNamed(act.Kind).WordOf(act, "hold")
-	if hold == "pump" && control.Kind == kindValve {
+	if hold == "pump" && isValve(control) {
 		k.say(Stops, act, "hold", "it is held by the pump, but %s throttles it; use hold: valve or brake", control.ID)
 	}
 	if hold == "pump" && k.c.PumpAtRest == Stop {
@@ -106,9 +106,12 @@ func (k *checker) holding(act, control *Block, direct []*Block) {
 	}
 }
 
+// isValve reports whether a block throttles or directs by edges.
+func isValve(b *Block) bool { return b.Kind == kindValve || b.Kind == kindSection63 }
+
 // fed checks that a throttling valve hangs on a supply.
 func (k *checker) fed(control *Block) {
-	if control.Kind != kindValve {
+	if !isValve(control) {
 		return
 	}
 	for n := range reach(k.c, k.of, PortRef{control.ID, "P"}) {
@@ -151,9 +154,13 @@ func (k *checker) canMove(act *Block, d *duty.Duty, a duty.Axis) {
 var outlets = map[string]map[string][]string{
 	kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}},
 	kindCheck: {"in": {"out"}}, kindPilotCheck: {"V": {"C"}, "C": {"V"}}, kindCounterbalance: {"V": {"C"}, "C": {"V"}},
+	kindReducing: {"P": {"A"}, "A": {"P"}}, kindSequence: {"P": {"A"}, "A": {"P"}}, kindFlowSharing: {"P": {"A"}, "A": {"P"}},
+	kindFlowControl: {"A": {"B"}, "B": {"A"}}, kindFlowControl3: {"P": {"A", "T"}, "A": {"P"}}, kindThrottleCheck: {"A": {"B"}, "B": {"A"}},
+	kindShuttleFlow: {"X": {"A"}, "Y": {"A"}, "A": {"X", "Y"}}, kindSection63: {"P": {"A", "B"}, "A": {"T", "P"}, "B": {"T", "P"}, "C1": {"C2"}, "C2": {"C1"}},
+	kindCooler: {"A": {"B"}, "B": {"A"}}, kindFlowPoint: {"A": {"B"}, "B": {"A"}}, kindFlowDivider: {"P": {"A", "B"}, "A": {"P"}, "B": {"P"}},
 	kindCompensator: {"P": {"A"}}, kindValve: {"P": {"A", "B", "T"}, "A": {"T", "P"}, "B": {"T", "P"}},
 	kindRelief: {"P": {"T"}}, kindPump: {"P": {"S"}, "S": {"P"}}, kindHydraulicMotor: {"A": {"B"}, "B": {"A"}},
-	kindUnloading: {"P": {"A", "T"}}, kindCylinder: {"A": {"B"}, "B": {"A"}}, kindChargePump: {"P": {"T"}, "S": {"P"}},
+	kindUnloading: {"P": {"A", "T"}}, kindCylinder: {"A": {"B"}, "B": {"A"}}, kindDoubleRod: {"A": {"B"}, "B": {"A"}}, kindChargePump: {"P": {"T"}, "S": {"P"}},
 }
 
 // escapes reports whether oil can get from a node to a tank or source, not through
@@ -162,7 +169,7 @@ func (k *checker) escapes(start *net, not string) bool {
 	pump := false
 	ways := func(b *Block, port string) []string {
 		pump = pump || b.Kind == kindPump
-		if b.ID == not || b.Kind == kindRelief {
+		if b.ID == not || b.Kind == kindRelief || (port == "A" && KindNamed(b.Kind).WordOf(b, "reverse") == "blocked") {
 			return nil
 		}
 		return outlets[b.Kind][port]

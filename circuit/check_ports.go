@@ -1,6 +1,7 @@
 package circuit
 
 import (
+	"slices"
 	"sort"
 	"strings"
 )
@@ -21,6 +22,12 @@ func (k *checker) ports() {
 		}
 		if b.Kind == kindPump && kind.WordOf(b, "control") == "load_sensing" && k.of[PortRef{b.ID, "LS"}] == nil {
 			k.say(Stops, b, "control", "a load-sensing pump needs a pilot line at its port LS")
+		}
+		if b.Kind == kindPump && kind.WordOf(b, "control") == "negative_flow" && k.of[PortRef{b.ID, "LS"}] == nil {
+			k.say(Stops, b, "control", "a negative_flow pump needs a pilot line at its port LS, from the line before an orifice in the return of the open centre")
+		}
+		if x := k.of[PortRef{b.ID, "X"}] != nil; b.Kind == kindSequence && x != (kind.WordOf(b, "pilot") == "external") {
+			k.say(Stops, b, "pilot", "with pilot: external it needs a pilot line at its port X, with pilot: inlet none")
 		}
 		if b.Kind == kindJunction && joined == 0 {
 			k.say(Warns, b, "", "the junction joins nothing")
@@ -96,7 +103,7 @@ func (k *checker) pressureControls() {
 	at := map[*net]*Block{}
 	for _, b := range sorted(k.c.Blocks) {
 		c := KindNamed(b.Kind).WordOf(b, "control")
-		if b.Kind != kindPump || (c != "pressure" && c != "load_sensing") {
+		if b.Kind != kindPump || (c != "pressure" && c != "load_sensing" && c != "pq") {
 			continue
 		}
 		n := k.of[PortRef{b.ID, "P"}]
@@ -115,23 +122,7 @@ func (k *checker) shafts() {
 	for _, n := range k.nets {
 		switch n.typ {
 		case Shaft:
-			var drives, movers, loads []string
-			for _, p := range n.ports {
-				switch b := k.c.Block(p.Block); b.Kind {
-				case kindElectricMotor:
-					drives = append(drives, b.ID)
-				case kindHydraulicMotor:
-					movers = append(movers, b.ID)
-				default:
-					loads = append(loads, b.ID)
-				}
-			}
-			if len(drives) > 1 {
-				k.say(Stops, k.c.Block(drives[1]), "", "%s each give the same shaft a speed; keep one", join(drives, "and"))
-			}
-			if len(drives)+len(movers) == 0 {
-				k.say(Stops, k.c.Block(loads[0]), "", "nothing drives the shaft of %s; connect an electric motor to it", join(loads, "and"))
-			}
+			k.train(n)
 		case Electric:
 			var feeds []string
 			for _, p := range n.ports {
@@ -147,6 +138,7 @@ func (k *checker) shafts() {
 		}
 	}
 	for _, b := range sorted(k.c.Blocks) {
+		k.reference(b)
 		if b.Kind == kindHydraulicMotor && b.Word("axis") == "" {
 			if n := k.of[PortRef{b.ID, "shaft"}]; n == nil || len(n.ports) < 2 {
 				k.say(Stops, b, "axis", "it drives nothing: give it an axis, or join its shaft to another machine")
@@ -155,6 +147,39 @@ func (k *checker) shafts() {
 		if b.Kind == kindElectricMotor && (follows(b) != "" || KindNamed(b.Kind).WordOf(b, "control") == "commanded") && k.of[PortRef{b.ID, "E"}] == nil {
 			k.say(Note, b, "", "its speed varies but no converter feeds it; the losses of the converter are not counted, and what comes back goes to the mains")
 		}
+	}
+}
+
+// train checks who drives a shaft and those that gearboxes join to it, once for all of them.
+func (k *checker) train(n *net) {
+	nets, _, ring := train(k.c, k.of, n)
+	var prime, movers, loads []string
+	for _, m := range nets {
+		if m.id < n.id {
+			return
+		}
+		for _, p := range m.ports {
+			switch b := k.c.Block(p.Block); b.Kind {
+			case kindElectricMotor, kindEngine:
+				prime = append(prime, b.ID)
+				k.slows(nets, b)
+			case kindHydraulicMotor:
+				movers = append(movers, b.ID)
+			default:
+				if !slices.Contains(loads, b.ID) {
+					loads = append(loads, b.ID)
+				}
+			}
+		}
+	}
+	if ring != "" {
+		k.say(Stops, k.c.Block(ring), "", "it closes a ring of gearboxes, which cannot turn freely; take it out or join the shafts")
+	}
+	if len(prime) > 1 {
+		k.say(Stops, k.c.Block(prime[1]), "", "%s each give the same shaft a speed; keep one", join(prime, "and"))
+	}
+	if len(prime)+len(movers) == 0 {
+		k.say(Stops, k.c.Block(loads[0]), "", "nothing drives the shaft of %s; connect an electric motor or an engine to it", join(loads, "and"))
 	}
 }
 

@@ -18,6 +18,10 @@ func (k *checker) safety() {
 			k.relieved(b, "A", "the bore side")
 			k.relieved(b, "B", "the rod side")
 			k.suspended(b)
+		case kindDoubleRod, kindPlunger:
+			k.relieved(b, "A", "side A")
+			k.relieved(b, "B", "side B")
+			k.suspended(b)
 		case kindHydraulicMotor:
 			if b.Word("axis") != "" {
 				k.relieved(b, "A", "side A")
@@ -44,6 +48,8 @@ func (k *checker) relieved(b *Block, port, name string) {
 var free = map[string]map[string][]string{
 	kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}},
 	kindCheck: {"in": {"out"}}, kindPilotCheck: {"V": {"C"}}, kindCounterbalance: {"V": {"C"}},
+	kindCooler: {"A": {"B"}, "B": {"A"}}, kindFlowPoint: {"A": {"B"}, "B": {"A"}},
+	kindThrottleCheck: {"A": {"B"}, "B": {"A"}}, kindFlowControl: {"B": {"A"}},
 }
 
 // hasRelief reports whether oil reaches a relief valve, tank or source from a node

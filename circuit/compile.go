@@ -55,9 +55,13 @@ type shaft struct {
 	name   string
 	speed  slot
 	sigma  slot // of a free shaft
-	free   bool // no prime mover: its torque balance is a row
+	row    slot // of a free shaft: its torque balance
+	free   bool // its torque balance is a row: no prime mover, or one of limited torque
 	driver string
-	sizes  []int // displacement parameters of the machines on it
+	sizes  []int      // displacement parameters of the machines on it
+	way    []gearStep // gearboxes from the first shaft of its train, whose speed it shares
+	train  []int      // shafts of its train, itself included; nil without gearboxes
+	all    *Compiled
 }
 
 // oilNode is a pressure.
@@ -99,7 +103,8 @@ type compiler struct {
 	shaftOf  map[int]int  // net id → shaft
 	elOf     map[int]int
 	axisOf   map[string]int
-	ownShaft map[string]int // blocks whose shaft is on no line
+	ownShaft map[string]int         // blocks whose shaft is on no line
+	joints   map[string]placedJoint // of gearboxes
 	nets     []*net
 }
 
@@ -113,7 +118,7 @@ func Compile(c *Circuit, axes []duty.Axis, d *duty.Duty) (*Compiled, []Finding) 
 		return nil, found
 	}
 	k := &compiler{Compiled: &Compiled{circuit: c, axes: axes, index: map[PortRef]int{}}, duty: d,
-		slots: map[int]slot{}, shaftOf: map[int]int{}, elOf: map[int]int{}, axisOf: map[string]int{}, ownShaft: map[string]int{}}
+		slots: map[int]slot{}, shaftOf: map[int]int{}, elOf: map[int]int{}, axisOf: map[string]int{}, ownShaft: map[string]int{}, joints: map[string]placedJoint{}}
 	k.nets, k.of = netsOf(c)
 	for i, a := range axes {
 		k.axisOf[a.Name] = i
@@ -130,6 +135,7 @@ func Compile(c *Circuit, axes []duty.Axis, d *duty.Duty) (*Compiled, []Finding) 
 			k.models = append(k.models, kind.build(k, b))
 		}
 	}
+	k.models = gearsLast(k.models)
 	k.void = len(k.channels)
 	k.channels = append(k.channels, Channel{Role: Loss, Block: "nodes", Kind: "void", Sink: ToOil})
 	return k.Compiled, found
@@ -234,7 +240,9 @@ func (k *compiler) placeShafts() {
 	for _, n := range k.nets {
 		switch n.typ {
 		case Shaft:
-			k.shaftOf[n.id] = k.newShaft(n)
+			if _, done := k.shaftOf[n.id]; !done {
+				k.placeTrain(n)
+			}
 		case Electric:
 			k.elOf[n.id] = k.electric
 			k.electric++
@@ -242,23 +250,32 @@ func (k *compiler) placeShafts() {
 	}
 }
 
-func (k *compiler) newShaft(n *net) int {
-	s := shaft{name: n.name(), sigma: noSlot}
+// newShaft places the first shaft of a train; imposed says that the duty gives its motion.
+func (k *compiler) newShaft(n *net, imposed bool) int {
+	s := shaft{name: n.name(), sigma: noSlot, row: noSlot, all: k.Compiled}
 	for _, p := range n.ports {
-		if b := k.circuit.Block(p.Block); b.Kind == kindElectricMotor {
-			s.driver = b.ID
-			if follows(b) != "" && k.duty.Given(follows(b)) == duty.MotionLoad {
-				s.speed = k.unknown(otherRow, b.ID+" speed")
+		b := k.circuit.Block(p.Block)
+		if !drives(b) {
+			continue
+		}
+		s.driver = b.ID
+		tracks := follows(b) != "" && k.duty.Given(follows(b)) == duty.MotionLoad
+		switch {
+		case limited(b):
+			s.free, s.speed = true, k.unknown(forceRow, b.ID+" speed")
+			s.row = s.speed
+			if tracks {
+				s.sigma = k.unknown(otherRow, b.ID+" friction")
 			} else {
-				s.speed = k.fixed()
+				s.sigma = k.fixed() // it turns the way it is told to
 			}
+		case tracks:
+			s.speed = k.unknown(otherRow, b.ID+" speed")
+		default:
+			s.speed = k.fixed()
 		}
 	}
 	if s.driver == "" {
-		imposed := false
-		for _, p := range n.ports {
-			imposed = imposed || k.imposesMotion(k.circuit.Block(p.Block))
-		}
 		s = k.freeShaft(n.name(), imposed)
 	}
 	k.shafts = append(k.shafts, s)
@@ -268,12 +285,13 @@ func (k *compiler) newShaft(n *net) int {
 // freeShaft makes a shaft without a prime mover: its speed is found from its
 // torque balance, unless the duty imposes the motion of an axis on it.
 func (k *compiler) freeShaft(name string, imposed bool) shaft {
-	s := shaft{name: name, free: true}
+	s := shaft{name: name, free: true, all: k.Compiled}
 	if imposed {
 		s.speed, s.sigma = k.fixed(), k.fixed()
 	} else {
 		s.speed, s.sigma = k.unknown(forceRow, name), k.unknown(otherRow, name+" friction")
 	}
+	s.row = s.speed
 	return s
 }
 
@@ -294,6 +312,19 @@ func (k *compiler) shaftAt(b *Block) int {
 	k.shafts = append(k.shafts, k.freeShaft(b.ID, k.imposesMotion(b)))
 	k.ownShaft[b.ID] = len(k.shafts) - 1
 	return len(k.shafts) - 1
+}
+
+// referenceSpeed returns the parameter of a pump's reference speed: its own, else that of
+// what drives it, −1 without either; through tells that gearboxes lie between.
+func (k *compiler) referenceSpeed(b *Block) (i int, through []gearStep) {
+	if i := k.param(b, "reference_speed"); i >= 0 {
+		return i, nil
+	}
+	s := &k.shafts[k.shaftAt(b)]
+	if d := k.circuit.Block(s.driver); d != nil {
+		return k.param(d, "speed"), s.way
+	}
+	return -1, nil
 }
 
 // node returns the pressure at a port; an unconnected port goes to the air.

@@ -148,6 +148,10 @@ type starter interface {
 	cold(s *step, level int, x []float64)
 }
 
+// shaftBooker is a model that books what is left of the torque of its shaft, after
+// all others on it.
+type shaftBooker interface{ bookShaft(k *booking) }
+
 // binding is what a model may take its numbers from.
 type binding struct {
 	p    []float64
@@ -168,11 +172,12 @@ func (b *binding) get(i int, fallback float64) float64 {
 type step struct {
 	k        int       // index into the series
 	t, dt    float64   // s; dt since the point before, 0 at the first and at both sides of a step
+	next     float64   // s, until the point after, as far as it is known
 	slow     []float64 // slow states at the point before
 	axes     []axisStep
 	standing bool   // all axes stand
 	atRest   AtRest // what the prime movers do while all stand
-	commands map[string][]float64
+	commands map[duty.Control][]float64
 	solver   *balance.Solver
 	x, fix   []float64
 	rest     []float64 // by node unknown: reference pressure of the leak
@@ -187,7 +192,9 @@ type axisStep struct {
 	standing                     bool
 	scaledDemand                 float64
 	flow                         float64 // scaled, about what the actuator takes: motion and slip
+	travel, before               float64 // way gone and speed at the point before
 	speed, found                 float64 // result: speed and load
+	end                          int     // result: 1, −1 where that end of its stroke holds it
 }
 
 // restAt gives a node that nothing else determines a place to rest [Pa].
@@ -195,6 +202,15 @@ func (s *step) restAt(node slot, pressure float64) {
 	if node >= 0 {
 		s.rest[node], s.restK[node] = pressure/s.pScale, restLeak
 	}
+}
+
+// command returns what a track of the duty says for a block in this step.
+func (s *step) command(block string, w duty.What) (float64, bool) {
+	v := s.commands[duty.Control{Block: block, What: w}]
+	if v == nil {
+		return 0, false
+	}
+	return v[s.k], true
 }
 
 // off reports whether the prime movers are switched off.

@@ -13,6 +13,7 @@ type machine struct {
 	P, S, D      slot
 	e            slot
 	speed, sigma slot
+	row          slot // torque balance of a free shaft
 	shaft        int
 	free         bool
 	disp         int // parameters
@@ -23,6 +24,7 @@ type machine struct {
 	sigP, sigE   int
 	slip, rub    int // channels
 
+	part       float64 // of the parameters' displacement and drag that this section has; 0 = all
 	law        machines.Displacement
 	d          float64 // displacement over that of the shaft's largest machine: flow per scaled speed
 	across     float64 // slip conductance P to S, scaled
@@ -60,7 +62,7 @@ var machineEquations = []Equation{
 // machine wires the common part; P and S are the port names of outlet and inlet.
 func (k *compiler) machine(b *Block, P, S string, shaft int, e slot) machine {
 	s := &k.shafts[shaft]
-	m := machine{P: k.node(b, P), S: k.node(b, S), D: k.node(b, "D"), e: e, shaft: shaft, speed: s.speed, sigma: s.sigma, free: s.free,
+	m := machine{P: k.node(b, P), S: k.node(b, S), D: k.node(b, "D"), e: e, shaft: shaft, speed: s.speed, sigma: s.sigma, row: s.row, free: s.free,
 		disp: k.param(b, "displacement"), cs: k.param(b, "slip"), cf: k.param(b, "friction"), cv: k.param(b, "viscous"),
 		tc: k.param(b, "drag"), share: k.param(b, "case_share"),
 		qP: k.port(b, P), qS: k.port(b, S), qD: k.port(b, "D"),
@@ -72,8 +74,29 @@ func (k *compiler) machine(b *Block, P, S string, shaft int, e slot) machine {
 	return m
 }
 
-// shaftSize returns the largest displacement on a shaft [m³/rad]: its scale.
+// usualSize [m³/rad] stands for the machines of a shaft without any, between a motor
+// and a gearbox: 50 cm³ a revolution. It is a scale, no result depends on it.
+const usualSize = 50e-6 / (2 * math.Pi)
+
+// size returns the largest displacement on a shaft [m³/rad], its scale; of shafts that
+// turn together, one for all as seen from this one's speed.
 func (s *shaft) size(p []float64) float64 {
+	if s.train == nil {
+		return s.largest(p)
+	}
+	d := 0.0
+	for _, i := range s.train {
+		o := &s.all.shafts[i]
+		d = math.Max(d, o.largest(p)/slower(o.way, p))
+	}
+	if d == 0 {
+		d = usualSize
+	}
+	return d * slower(s.way, p)
+}
+
+// largest returns the largest displacement on a shaft [m³/rad].
+func (s *shaft) largest(p []float64) float64 {
 	d := 0.0
 	for _, i := range s.sizes {
 		d = math.Max(d, p[i])
@@ -82,14 +105,18 @@ func (s *shaft) size(p []float64) float64 {
 }
 
 func (m *machine) bindMachine(b *binding, shafts []shaft) {
-	D := b.p[m.disp]
-	m.law = machines.Displacement{D: D, Cs: b.p[m.cs], Cf: b.p[m.cf], Cv: b.p[m.cv], Tc: b.p[m.tc]}
+	part := m.part
+	if part == 0 {
+		part = 1
+	}
+	D := part * b.p[m.disp]
+	m.law = machines.Displacement{D: D, Cs: b.p[m.cs], Cf: b.p[m.cf], Cv: b.p[m.cv], Tc: part * b.p[m.tc]}
 	size := shafts[m.shaft].size(b.p)
 	m.wPer = b.scales.q / size
 	m.tPer = size * b.scales.p
 	m.d = D / size
 	k := m.law.Cs * D / b.cond.Viscosity * b.scales.p / b.scales.q
-	share := b.p[m.share]
+	share := b.get(m.share, 0)
 	m.across, m.drain = k*(1-share), k*share
 	m.cf1 = m.law.Cf * m.d
 	m.visc = m.law.Cv * D * b.cond.Viscosity * m.wPer / m.tPer
@@ -112,18 +139,35 @@ func (m *machine) evalMachine(e *eval) {
 		e.conduct(m.P, m.D, m.drain)
 		e.conduct(m.S, m.D, m.drain)
 	}
-	if !m.free {
-		return
+	if m.free { // the torque row of the shaft sums them
+		m.addTorque(e, m.row, 1, m.torque(e))
 	}
-	// Torque needed from the shaft; the row of its speed sums them.
-	dp, sg := e.val(m.P)-e.val(m.S), e.val(m.sigma)
+}
+
+// torque is what a machine needs from its shaft, scaled, and its slopes by setting,
+// speed, pressure at P (at S the negative) and friction sign.
+type torque struct{ need, e, w, p, sigma float64 }
+
+func (m *machine) torque(e *eval) torque {
+	set, w, dp := e.val(m.e), e.val(m.speed), e.val(m.P)-e.val(m.S)
+	sg := sign(w)
+	if m.free {
+		sg = e.val(m.sigma)
+	}
 	dry, slope := m.cf1*math.Abs(dp)+m.tc1, m.cf1*sign(dp)
-	e.add(m.speed, set*m.d*dp+sg*dry+m.visc*w)
-	e.d(m.speed, m.speed, m.visc)
-	e.d(m.speed, m.e, m.d*dp)
-	e.d(m.speed, m.P, set*m.d+sg*slope)
-	e.d(m.speed, m.S, -set*m.d-sg*slope)
-	e.d(m.speed, m.sigma, dry)
+	return torque{set*m.d*dp + sg*dry + m.visc*w, m.d * dp, m.visc, set*m.d + sg*slope, dry}
+}
+
+// addTorque adds k times a torque of the machine to a row.
+func (m *machine) addTorque(e *eval, row slot, k float64, t torque) {
+	e.add(row, k*t.need)
+	e.d(row, m.e, k*t.e)
+	e.d(row, m.speed, k*t.w)
+	e.d(row, m.P, k*t.p)
+	e.d(row, m.S, -k*t.p)
+	if m.free {
+		e.d(row, m.sigma, k*t.sigma)
+	}
 }
 
 // bookMachine books slip and friction and returns the torque needed at the shaft.

@@ -33,6 +33,10 @@ func (p polarity) fixed() float64 {
 var passes = map[string]map[string][]string{
 	kindLine: {"A": {"B"}, "B": {"A"}}, kindFilter: {"A": {"B"}, "B": {"A"}}, kindOrifice: {"A": {"B"}, "B": {"A"}},
 	kindCheck: {"in": {"out"}, "out": {"in"}}, kindPilotCheck: {"V": {"C"}, "C": {"V"}}, kindCounterbalance: {"V": {"C"}, "C": {"V"}},
+	kindFlowSharing: {"P": {"A"}, "A": {"P"}}, kindReducing: {"P": {"A"}, "A": {"P"}}, kindSequence: {"P": {"A"}, "A": {"P"}},
+	kindFlowControl: {"A": {"B"}, "B": {"A"}}, kindFlowControl3: {"P": {"A"}, "A": {"P"}}, kindThrottleCheck: {"A": {"B"}, "B": {"A"}},
+	kindShuttleFlow: {"X": {"A"}, "Y": {"A"}, "A": {"X", "Y"}}, kindSection63: {"C1": {"C2"}, "C2": {"C1"}},
+	kindCooler: {"A": {"B"}, "B": {"A"}}, kindFlowPoint: {"A": {"B"}, "B": {"A"}}, kindFlowDivider: {"P": {"A", "B"}, "A": {"P"}, "B": {"P"}},
 	kindCompensator: {"P": {"A"}, "A": {"P"}}, kindUnloading: {"P": {"A"}, "A": {"P"}},
 }
 
@@ -45,8 +49,16 @@ func (k *compiler) polarityOf(from PortRef, axis int) polarity {
 		return 1
 	}
 	near := reach(k.circuit, k.of, from)
-	dA, okA := near[k.of[PortRef{b.ID, "A"}]]
-	dB, okB := near[k.of[PortRef{b.ID, "B"}]]
+	nearest := func(port string) (d int, ok bool) { // of the actuator and of motors that turn with it
+		for _, id := range append(k.turning(b), b.ID) {
+			if e, found := near[k.of[PortRef{id, port}]]; found && (!ok || e < d) {
+				d, ok = e, true
+			}
+		}
+		return
+	}
+	dA, okA := nearest("A")
+	dB, okB := nearest("B")
 	switch {
 	case okA && (!okB || dA <= dB):
 		return 1
@@ -56,13 +68,19 @@ func (k *compiler) polarityOf(from PortRef, axis int) polarity {
 	return byDemand
 }
 
+// turning lists the hydraulic motors on the shafts that turn with a block's shaft.
+func (k *compiler) turning(b *Block) (ids []string) {
+	for _, p := range trainPorts(k.circuit, k.of, b) {
+		if k.circuit.Block(p.Block).Kind == kindHydraulicMotor {
+			ids = append(ids, p.Block)
+		}
+	}
+	return
+}
+
 // shaftPolarity is the polarity of the pumps on a motor's shaft.
 func (k *compiler) shaftPolarity(b *Block, axis int) polarity {
-	n := k.of[PortRef{b.ID, "shaft"}]
-	if n == nil {
-		return 1
-	}
-	for _, p := range n.ports {
+	for _, p := range trainPorts(k.circuit, k.of, b) {
 		if o := k.circuit.Block(p.Block); o.Kind == kindPump {
 			q := PortRef{o.ID, "P"}
 			if p := k.polarityOf(q, axis); p != byDemand || k.directed(axis) {

@@ -136,7 +136,7 @@ func (r *run) Eval(x, g, jac []float64) {
 	}
 	for i := range r.shafts {
 		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
-		if s := &r.shafts[i]; s.free {
+		if s := &r.shafts[i]; s.free && len(s.way) == 0 {
 			e.add(s.sigma, -e.val(s.speed))
 			e.d(s.sigma, s.speed, -1)
 		}
@@ -229,6 +229,19 @@ func between(v []float64, k int, share float64) float64 {
 	return v[k-1] + share*(v[k]-v[k-1])
 }
 
+// next is the time from a point to the one after it; what follows a series is taken
+// to go on as it did.
+func (r *run) next(k int, share float64) float64 {
+	t := r.series.T
+	switch {
+	case share < 1 && k > 0:
+		return (1 - share) * (t[k] - t[k-1])
+	case k+1 < len(t):
+		return t[k+1] - t[k]
+	}
+	return r.step.dt
+}
+
 // begin sets the demands at a share of the way from the step before to step k, 1 for
 // the step itself, and lets every block prepare.
 func (r *run) begin(k int, share float64) {
@@ -239,9 +252,10 @@ func (r *run) begin(k int, share float64) {
 	if r.state.begun {
 		s.dt = math.Max(0, s.t-r.state.lastT)
 	}
+	s.next = r.next(k, share)
 	for i := range s.axes {
 		a, d := &s.axes[i], &r.series.Axes[i]
-		*a = axisStep{given: d.Given, standing: d.Standing[k]}
+		*a = axisStep{given: d.Given, standing: d.Standing[k], travel: r.state.travel[i], before: r.state.speed[i]}
 		a.load, a.command, a.demand = between(d.Load, k, share), between(d.Command, k, share), between(d.Speed, k, share)
 		if d.Accel != nil {
 			a.accel = d.Accel[k]
@@ -362,7 +376,12 @@ func (r *run) bookAll() {
 		m.book(b)
 	}
 	for _, m := range r.models {
-		if e, ok := m.(*electricModel); ok {
+		if g, ok := m.(*gearboxModel); ok {
+			g.bookTorque(b)
+		}
+	}
+	for _, m := range r.models {
+		if e, ok := m.(shaftBooker); ok {
 			e.bookShaft(b)
 		}
 	}
@@ -410,7 +429,7 @@ func (r *run) axesNow(k int, unbalanced bool) {
 	s.Stopped, s.Unbalanced = r.step.off(), unbalanced
 	for i := range r.axes {
 		a := &r.step.axes[i]
-		now := AxisNow{Demand: a.demand, Speed: a.speed, Load: a.found, Standing: a.standing}
+		now := AxisNow{Demand: a.demand, Speed: a.speed, Load: a.found, Standing: a.standing, End: a.end}
 		if a.given == duty.LoadCommand {
 			now.Demand = a.speed
 		}

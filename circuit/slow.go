@@ -149,6 +149,7 @@ func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Ser
 	}
 	var past [][]float64
 	for n := 0; n < maxCycles; n++ {
+		st.travel = nil // every cycle begins where its axes stand at the start
 		if st, cert, err = Run(ctx, c, params, s, cond, st, Receivers{}); err != nil {
 			return 0, st, cert, err
 		}
@@ -181,6 +182,7 @@ func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Ser
 		} else {
 			st.begun = false // the first point of the period has no time before it
 		}
+		st.travel = nil
 		var one Certificate
 		var runErr error
 		if st, one, runErr = Run(ctx, c, params, &later, cond, st, to); runErr != nil {

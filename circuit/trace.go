@@ -11,7 +11,7 @@ type Role int
 //
 // up to what the balance left unsolved, with supply summed over all prime movers.
 const (
-	Supply Role = iota // power at the mains terminals of a motor or converter, > 0 drawn, < 0 returned
+	Supply Role = iota // power at the mains terminals of a motor or converter, > 0 drawn, < 0 returned; fuel power of an engine
 	Work               // power given to the load of an axis, > 0 resisted, < 0 the load drives
 	Stored             // power going into a store (moved mass, lifted oil, pressure source), either sign
 	Loss               // power lost, >= 0
@@ -21,7 +21,7 @@ const (
 type Channel struct {
 	Role  Role
 	Block string
-	Kind  string // of loss, as in the catalog; else "supply", the axis name, or what stores it
+	Kind  string // of loss, as in the catalog; else "supply", "fuel", the axis name, or what stores it
 	Sink  Sink   // of a loss
 }
 
@@ -30,7 +30,7 @@ type Signal struct {
 	Name  string // "RV1.P.p", "C1.v", "P1.shaft"
 	Block string
 	Port  string // "" when it is the block's own
-	What  string // "p", "q", "v", "w", "F", "T", "e", "u", "shaft", "electric"
+	What  string // "p", "q", "v", "w", "F", "T", "e", "u", "shaft", "electric", "fuel"
 	Title string // for plots: "pressure at P"
 	Dim   units.Dim
 	// Undetermined is set for pressures that the circuit does not determine at
@@ -44,6 +44,7 @@ type AxisNow struct {
 	Speed    float64
 	Load     float64 // N or N·m
 	Standing bool
+	End      int // 1 or −1 where that end of its stroke holds it, else 0
 }
 
 // Sample is one time step of a run. Its slices are used again for the next one.

@@ -14,6 +14,7 @@ type Watch struct {
 	params []float64
 
 	steps  int
+	cycles int // that are over
 	lastT  float64
 	weight float64 // half the time since the step before
 	ext    []extreme
@@ -25,6 +26,7 @@ type Watch struct {
 	stop   bool
 	span   float64
 	mach   []machineWatch
+	drives []driveWatch
 }
 
 // extreme is the range of a signal and when it was reached.
@@ -42,6 +44,8 @@ type axisWatch struct {
 	was              bool
 	lastLost         float64
 	travel, lo, hi   float64
+	ended, tEnd      float64 // s against an end while it should move; when it first was
+	end, wasEnd      int     // that end; the end at the step before
 	lastV            float64
 }
 
@@ -97,13 +101,14 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 		return -1
 	}
 	for _, b := range sorted(c.circuit.Blocks) {
+		w.drive(b, get(b.ID+".w"), get(b.ID+".T"))
 		switch b.Kind {
 		case kindElectricMotor:
 			p, n := w.value(b, "rated_power"), w.value(b, "speed")
 			w.motors = append(w.motors, motorWatch{b: b, torque: get(b.ID + ".T"), speed: get(b.ID + ".w"), rated: p / n})
 		case kindRelief:
 			w.reds = append(w.reds, reliefWatch{b: b, flow: get(b.ID + ".P.q"), p: get(b.ID + ".P.p")})
-		case kindPump, kindChargePump, kindHydraulicMotor:
+		case kindPump, kindChargePump, kindHydraulicMotor, kindFlowDivider:
 			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1)}
 			if b.Kind == kindHydraulicMotor {
 				m.pP, m.pS = get(b.ID+".A.p"), get(b.ID+".B.p")
@@ -120,6 +125,19 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 		}
 	}
 	return w
+}
+
+// cycle takes the axes back to where they stand at the start when a cycle is over: its
+// last point and the first of the next stand at one time.
+func (w *Watch) cycle(t, dt float64) {
+	first, last := w.series.T[0], w.series.T[len(w.series.T)-1]
+	if end := last + float64(w.cycles)*(last-first); dt > 0 || w.steps < 2 || t < end-1e-9*(last-first) {
+		return
+	}
+	w.cycles++
+	for i := range w.axes {
+		w.axes[i].travel = 0
+	}
 }
 
 // value is a parameter as the run has it.
@@ -152,6 +170,7 @@ func (w *Watch) Sample(s *Sample) error {
 			e.max, e.tMax = v, s.T
 		}
 	}
+	w.cycle(s.T, dt)
 	for i := range w.axes {
 		w.axes[i].take(s.Axes[i], w.series.Axes[i].Given, w.series.Axes[i].Top, s.T, dt)
 	}
@@ -178,6 +197,9 @@ func (w *Watch) Sample(s *Sample) error {
 	for i := range w.mach {
 		w.mach[i].take(s, dt)
 	}
+	for i := range w.drives {
+		w.drives[i].take(s, dt)
+	}
 	for i, q := range s.Void {
 		v := &w.voids[i]
 		if q > v.worst {
@@ -198,6 +220,7 @@ func (a *axisWatch) take(now AxisNow, given duty.Given, top, t, dt float64) {
 	a.travel += dt * (a.lastV + now.Speed) / 2
 	a.lastV = now.Speed
 	a.lo, a.hi = math.Min(a.lo, a.travel), math.Max(a.hi, a.travel)
+	a.stops(now, t, dt)
 	lost := 0.0
 	if given == duty.MotionLoad {
 		switch {
@@ -230,6 +253,21 @@ func (a *axisWatch) take(now AxisNow, given duty.Given, top, t, dt float64) {
 		a.lost += dt * (lost + a.lastLost) / 2
 	}
 	a.was, a.lastLost = lost > 0, lost
+}
+
+// stops notes how long an axis pushes against an end of its stroke.
+func (a *axisWatch) stops(now AxisNow, t, dt float64) {
+	end := now.End
+	if now.Standing {
+		end = 0 // it may well rest there
+	}
+	if end != 0 && a.end == 0 {
+		a.end, a.tEnd = end, t
+	}
+	if end != 0 && a.wasEnd != 0 {
+		a.ended += dt
+	}
+	a.wasEnd = end
 }
 
 func (m *machineWatch) take(s *Sample, dt float64) {

@@ -20,6 +20,7 @@ func (w *Watch) Findings() []Finding {
 	w.ratings(f)
 	w.speeds(f)
 	w.torques(f)
+	w.drivesHeld(f)
 	w.motions(f)
 	w.reliefs(f)
 	w.accumulators(f)
@@ -141,12 +142,28 @@ func (w *Watch) motions(f *findings) {
 		if a.falls != 0 {
 			f.add(Caution, b, "hold", a.tFall, "it is not held: it moves at up to %s while it should stand", show(math.Abs(a.falls), speed))
 		}
-		if b == nil || b.Kind != kindCylinder {
-			continue
+		if b != nil && movesAlong(b.Kind) {
+			w.strokes(f, b, a, w.series.Axes[i].Given)
 		}
-		if v, ok := b.Values["stroke"]; ok && a.hi-a.lo > v.SI*(1+1e-6) {
-			f.add(Warns, b, "stroke", 0, "the duty moves it over %s, more than its stroke of %s", mm(a.hi-a.lo), mm(v.SI))
-		}
+	}
+}
+
+// strokes compares the way of a cylinder with its stroke.
+func (w *Watch) strokes(f *findings, b *Block, a axisWatch, given duty.Given) {
+	if _, ok := b.Values["stroke"]; !ok {
+		return
+	}
+	stroke, start := w.value(b, "stroke"), w.value(b, "start")
+	_, placed := b.Values["start"]
+	slack := 2 * endSlack * stroke
+	switch {
+	case a.end != 0:
+		f.add(Warns, b, "stroke", a.tEnd, "runs against its end %s at %s and stands there for %s a cycle, pushing. Shorten the strokes of the duty, or correct its stroke of %s or its start at %s",
+			map[int]string{1: "(drawn out)", -1: "(drawn in)"}[a.end], clock(a.tEnd), clock(a.ended), mm(stroke), mm(start))
+	case placed && given == duty.MotionCommand && (start+a.lo < -slack || start+a.hi > stroke+slack):
+		f.add(Warns, b, "stroke", 0, "the motion given takes it from %s to %s, beyond its stroke of 0 to %s; correct its start, its stroke or the recording", mm(start+a.lo), mm(start+a.hi), mm(stroke))
+	case !placed && a.hi-a.lo > stroke*(1+1e-6):
+		f.add(Warns, b, "stroke", 0, "the duty moves it over %s, more than its stroke of %s", mm(a.hi-a.lo), mm(stroke))
 	}
 }
 

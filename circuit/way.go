@@ -50,11 +50,11 @@ var returnEquation = Equation{"reverse free: q = q2·√((Δp − po)/Δp2) back
 
 // returnCheck is the built-in check valve; without one q is noSlot.
 type returnCheck struct {
-	a, b, q        slot
-	po, qN, dN     int
-	loss           int
-	opens          float64
-	t              throat
+	a, b, q    slot
+	po, qN, dN int
+	loss       int
+	opens      float64
+	t          throat
 }
 
 func (k *compiler) returnCheck(b *Block, from, to string) returnCheck {

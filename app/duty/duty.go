@@ -25,7 +25,7 @@ type Station struct {
 	content fyne.CanvasObject
 	filled  fyne.CanvasObject // shown when there is a duty
 	empty   fyne.CanvasObject
-	picker  *widget.Select
+	picker  *widgets.Select
 	facts   *widget.Label
 	source  *widget.Label
 	plot    *widgets.ClockPlot
@@ -54,7 +54,7 @@ func (s *Station) Name() string { return "Duty" }
 func (s *Station) Content() fyne.CanvasObject { return s.content }
 
 func (s *Station) build() {
-	s.picker = widgets.Name(widget.NewSelect(nil, nil), "duty.picker")
+	s.picker = widgets.Name(widgets.NewSelect(nil, nil), "duty.picker")
 	s.picker.PlaceHolder = "no duty"
 	s.picker.OnChanged = func(string) {
 		if i := s.picker.SelectedIndex(); !s.loading && i >= 0 {

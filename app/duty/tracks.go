@@ -20,9 +20,11 @@ type track struct {
 
 // quantities of the tracks, for axes along a line and axes that turn.
 var quantities = map[cycle.What][2]units.Dim{
-	cycle.Speed:    {units.Velocity, units.AngularSpeed},
-	cycle.Position: {units.Length, units.Angle},
-	cycle.Load:     {units.Force, units.Torque},
+	cycle.Speed:       {units.Velocity, units.AngularSpeed},
+	cycle.Position:    {units.Length, units.Angle},
+	cycle.Load:        {units.Force, units.Torque},
+	cycle.SetPressure: {units.Pressure, units.Pressure},
+	cycle.SetFlow:     {units.Flow, units.Flow},
 }
 
 // tracksOf returns time and tracks, axis by axis as the file lists them, then the

@@ -19,7 +19,7 @@ type Station struct {
 	content fyne.CanvasObject
 	filled  fyne.CanvasObject
 	empty   *widget.Label
-	scope   *widget.Select
+	scope   *widgets.Select
 	caption *widget.Label
 	steps   *widgets.Figure
 	table   *widgets.Table
@@ -68,7 +68,7 @@ func (s *Station) Name() string { return "Energy" }
 func (s *Station) Content() fyne.CanvasObject { return s.content }
 
 func (s *Station) build() {
-	s.scope = widgets.Name(widget.NewSelect(nil, nil), "energy.scope")
+	s.scope = widgets.Name(widgets.NewSelect(nil, nil), "energy.scope")
 	s.scope.OnChanged = func(string) {
 		if i := s.scope.SelectedIndex(); !s.loading && i >= 0 {
 			s.pick(i)
@@ -155,7 +155,7 @@ func (s *Station) lacking() string {
 	case s.shown == nil:
 		return "Nothing is solved yet. As soon as a circuit is balanced over a duty, its energy stands here."
 	case len(s.shown.Circuits) == 0:
-		return "There is no circuit yet. Draw one in the Circuit station, or open a file."
+		return "There is no circuit yet. Open an audit, or take File > New from sample."
 	case len(s.shown.File.Duties) == 0:
 		return "There is no duty yet, so no energy flows. Give what the axes must do in the Duty station."
 	}

@@ -23,6 +23,51 @@ type box struct {
 	d *dialog.CustomDialog
 }
 
+// asking reports whether a dialog is open: the menu then waits.
+func (f *Frame) asking() bool {
+	for _, b := range f.boxes {
+		if b.shown() {
+			return true
+		}
+	}
+	return false
+}
+
+// closable is a dialog that Escape closes.
+type closable struct {
+	dialog.Dialog
+	open bool
+}
+
+func (c *closable) shown() bool { return c.open }
+
+// keep remembers an open dialog, for Escape and for the menu.
+func (f *Frame) keep(d dialog.Dialog) {
+	c := &closable{d, true}
+	d.SetOnClosed(func() { c.open = false })
+	f.boxes = append(f.boxes[:0:0], append(f.openBoxes(), c)...)
+}
+
+func (f *Frame) openBoxes() []*closable {
+	var out []*closable
+	for _, b := range f.boxes {
+		if b.open {
+			out = append(out, b)
+		}
+	}
+	return out
+}
+
+// escape closes the dialog on top and reports whether there was one.
+func (f *Frame) escape() bool {
+	open := f.openBoxes()
+	if len(open) == 0 {
+		return false
+	}
+	open[len(open)-1].Hide()
+	return true
+}
+
 // answer is a button of a box.
 type answer struct {
 	verb   string
@@ -52,7 +97,14 @@ func (f *Frame) ask(title string, content fyne.CanvasObject, answers ...answer) 
 	}
 	b.d.SetButtons(buttons)
 	b.d.Show()
-	f.win.Canvas().Focus(buttons[0].(fyne.Focusable))
+	f.keep(b.d)
+	first := buttons[0].(fyne.Focusable)
+	f.win.Canvas().Focus(first)
+	post(func() { // a click that led here takes the focus away once it is over
+		if f.win.Canvas().Focused() == nil {
+			f.win.Canvas().Focus(first)
+		}
+	})
 	return b
 }
 
@@ -118,7 +170,7 @@ func (f *Frame) leave(then func()) {
 		then()
 		return
 	}
-	f.ask("Unsaved changes", paragraph(f.doc.Title()+" has changes that are not saved.", 420),
+	f.ask("Unsaved changes", paragraph(strings.TrimSuffix(f.doc.Title(), "*")+" has changes that are not saved.", 420),
 		answer{verb: "Save", do: func() { f.save(then) }},
 		answer{verb: "Discard", danger: true, do: then},
 		answer{verb: "Cancel"})
@@ -177,13 +229,14 @@ func (f *Frame) askOpen() {
 		}
 	}, f.win)
 	d.SetFilter(storage.NewExtensionFileFilter([]string{".yaml", ".yml"}))
-	f.startAt(d)
-	d.Resize(fyne.NewSize(760, 520))
-	d.Show()
+	f.showFiles(d, "Open an audit", "Open")
 }
 
-// startAt opens a file dialog where the open file is.
-func (f *Frame) startAt(d *dialog.FileDialog) {
+// showFiles opens a file dialog where the open file is.
+func (f *Frame) showFiles(d *dialog.FileDialog, title, verb string) {
+	d.SetTitleText(title)
+	d.SetConfirmText(verb)
+	d.SetView(dialog.ListView)
 	dir := filepath.Dir(f.doc.Path())
 	if f.doc.Path() == "" {
 		dir, _ = os.UserHomeDir()
@@ -191,6 +244,10 @@ func (f *Frame) startAt(d *dialog.FileDialog) {
 	if l, err := storage.ListerForURI(storage.NewFileURI(dir)); err == nil {
 		d.SetLocation(l)
 	}
+	k, room := widgets.Scale(), f.win.Canvas().Size()
+	d.Resize(fyne.NewSize(min(760*k, room.Width-40), min(520*k, room.Height-40)))
+	d.Show()
+	f.keep(d)
 }
 
 // save saves, asking for a name where there is none, then goes on.
@@ -232,10 +289,19 @@ func (f *Frame) saveAs(then func()) {
 			f.saved(f.doc.SaveAs(path), then)
 		}
 	}, f.win)
-	d.SetFileName("audit.yaml")
-	f.startAt(d)
-	d.Resize(fyne.NewSize(760, 520))
-	d.Show()
+	d.SetFileName(f.suggestedName())
+	f.showFiles(d, "Save the audit as", "Save")
+}
+
+// suggestedName is the name that a file dialog begins with: that of the open file or sample.
+func (f *Frame) suggestedName() string {
+	if p := f.doc.Path(); p != "" {
+		return filepath.Base(p)
+	}
+	if name, _, ok := strings.Cut(f.doc.Title(), " (sample)"); ok {
+		return name + ".yaml"
+	}
+	return "audit.yaml"
 }
 
 // saveDirVariable names the folder that scripts save into, without a dialog.
@@ -285,8 +351,20 @@ func (f *Frame) Explain(x audit.Figure) {
 // help shows the short help of the station at hand.
 func (f *Frame) help() {
 	s := f.stations[f.current]
-	f.ask(s.Name(), container.NewVScroll(paragraph(s.Help(), 560)), answer{verb: "Close"}).d.Resize(fyne.NewSize(620, 420))
+	k, room := widgets.Scale(), f.win.Canvas().Size()
+	width := min(560, (room.Width-80)/k)
+	f.ask("Help: "+s.Name(), container.NewVScroll(paragraph(s.Help()+"\n\n"+frameHelp, width)), answer{verb: "Close"}).d.
+		Resize(fyne.NewSize((width+50)*k, min(460*k, room.Height-40)))
 }
+
+// frameHelp is what holds at every station.
+const frameHelp = `Everywhere: the line at the top is the verdict; a click on one of its figures opens how it was calculated. It follows every change by itself; there is nothing to start.
+
+The strip below shows the duty at hand. Drag in it to move the clock, or with the strip in focus press the arrow keys, Page Up and Page Down, Home and End; Space lets the clock run.
+
+Ctrl+1 to Ctrl+6 go to the stations. Tab goes to the next field or button, Ctrl+Z takes a change back, Ctrl+Y does it again. Escape brings the old value back into a field.
+
+Values can be typed with any unit, as in 2300 psi or 45 gpm, with a decimal point or comma. View sets units, decimal sign, light or dark, and the size of everything.`
 
 func (f *Frame) about() {
 	f.ask("About Barlitre", paragraph("Barlitre balances oil-hydraulic circuits over a duty cycle and audits throttled control against displacement control: energy, heat, cooler, money.\n\n"+

@@ -45,6 +45,7 @@ type Frame struct {
 	status  *widget.Label
 	body    *fyne.Container
 	menu    menus
+	boxes   []*closable // dialogs, the last on top
 	dumper  *dumper
 	closed  bool
 }
@@ -96,9 +97,8 @@ func (f *Frame) build() {
 		content.Hide()
 		f.body.Add(content)
 	}
-	bottom := container.NewVBox(widget.NewSeparator(), f.strip.content, f.status)
-	top := container.NewVBox(f.verdict, widget.NewSeparator())
-	f.win.SetContent(widgets.NewTips(container.NewBorder(top, bottom, f.rail.content, nil, f.body)))
+	f.win.SetContent(widgets.NewTips(container.New(&page{f}, f.verdict, widget.NewSeparator(), f.rail.content,
+		container.NewScroll(f.body), widget.NewSeparator(), f.strip.content, f.status)))
 	f.buildMenu()
 	f.shortcuts()
 	f.show(0)
@@ -199,6 +199,12 @@ func (f *Frame) keepInRange() {
 // firstMotion is a time at which something moves, so that the first picture shows it.
 func (f *Frame) firstMotion() float64 {
 	d := f.doc.File().Duties[f.duty]
+	switch { // a faulty duty has findings, and no course
+	case len(d.Time) == 0:
+		return 0
+	case len(d.Check()) > 0:
+		return d.Time[0]
+	}
 	series := d.Series(f.doc.File().Axes, false)
 	best, at := 0.0, d.Time[0]
 	for k, t := range series.T {
@@ -355,7 +361,7 @@ func (f *Frame) Open(path string) {
 		f.open(path)
 	} else {
 		f.openSample(firstSample)
-		f.Say("Sample, invented data. File > New starts an audit of your own; click a block to change it, and the verdict follows.")
+		f.Say("Sample, invented data. File > New from sample and File > Open start an audit of your own; click a block to change it, and the verdict follows.")
 	}
 	f.offerRecovery()
 }

@@ -42,23 +42,40 @@ type bench struct {
 }
 
 func newBench(t *testing.T) *bench {
-	t.Helper()
-	b := &bench{t: t, queue: make(chan func(), 1000)}
-	old := post
-	post = func(do func()) { b.queue <- do }
-	app := test.NewTempApp(t)
+	b := &bench{t: t}
 	var make []func(station.Context) station.Station
 	for _, name := range []string{"Circuit", "Duty", "Energy"} {
 		p := &plain{name: name, box: container.NewStack(canvas.NewRectangle(color.Transparent))}
 		b.pages = append(b.pages, p)
 		make = append(make, func(station.Context) station.Station { return p })
 	}
-	b.Frame = New(app, document.Options{Config: t.TempDir()}, make...)
-	t.Cleanup(func() {
+	return b.open(make...)
+}
+
+// open makes the frame with its stations.
+func (b *bench) open(stations ...func(station.Context) station.Station) *bench {
+	b.t.Helper()
+	b.queue = make(chan func(), 1000)
+	old := post
+	post = func(do func()) { b.queue <- do }
+	b.Frame = New(test.NewTempApp(b.t), document.Options{Config: b.t.TempDir()}, stations...)
+	b.t.Cleanup(func() {
 		b.doc.Abandon()
 		post = old
 	})
 	return b
+}
+
+// drain runs what waits in the queue.
+func (b *bench) drain() {
+	for {
+		select {
+		case do := <-b.queue:
+			do()
+		default:
+			return
+		}
+	}
 }
 
 // until runs the queue until done says so.

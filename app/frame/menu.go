@@ -3,6 +3,8 @@ package frame
 import (
 	"fmt"
 	"path/filepath"
+	"unicode"
+	"unicode/utf8"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/driver/desktop"
@@ -35,7 +37,11 @@ func (f *Frame) buildMenu() {
 		return &desktop.CustomShortcut{KeyName: name, Modifier: fyne.KeyModifierShortcutDefault | more}
 	}
 	item := func(text string, s fyne.Shortcut, do func()) *fyne.MenuItem {
-		m := fyne.NewMenuItem(text, do)
+		m := fyne.NewMenuItem(text, func() {
+			if !f.asking() { // a dialog wants its answer first
+				do()
+			}
+		})
 		m.Shortcut = s
 		return m
 	}
@@ -43,13 +49,13 @@ func (f *Frame) buildMenu() {
 	start := fyne.NewMenuItem("New from sample", nil)
 	start.ChildMenu = fyne.NewMenu("")
 	for _, name := range samples.Names() {
-		start.ChildMenu.Items = append(start.ChildMenu.Items, fyne.NewMenuItem(sampleTitle(name), func() { f.leave(func() { f.openSample(name) }) }))
+		start.ChildMenu.Items = append(start.ChildMenu.Items, item(sampleTitle(name), nil, func() { f.leave(func() { f.openSample(name) }) }))
 	}
 	m.recent = fyne.NewMenuItem("Open recent", nil)
 	m.recent.ChildMenu = fyne.NewMenu("")
 	m.save = item("Save", key(fyne.KeyS, 0), func() { f.save(nil) })
-	m.undo = item("Undo", &fyne.ShortcutUndo{}, func() { f.undoOr(&fyne.ShortcutUndo{}, f.doc.Undo) })
-	m.redo = item("Redo", &fyne.ShortcutRedo{}, func() { f.undoOr(&fyne.ShortcutRedo{}, f.doc.Redo) })
+	m.undo = item("Undo", &fyne.ShortcutUndo{}, func() { f.undoOr(&fyne.ShortcutUndo{}, "Undone", f.doc.Undo) })
+	m.redo = item("Redo", &fyne.ShortcutRedo{}, func() { f.undoOr(&fyne.ShortcutRedo{}, "Done again", f.doc.Redo) })
 	quit := item("Quit", key(fyne.KeyQ, 0), f.quit)
 	quit.IsQuit = true
 	file := fyne.NewMenu("File", start,
@@ -62,7 +68,7 @@ func (f *Frame) buildMenu() {
 	}
 	view := fyne.NewMenu("View")
 	setting := func(text string, on func() bool, change func()) {
-		it := fyne.NewMenuItem(text, func() {
+		it := item(text, nil, func() {
 			change()
 			f.applySettings()
 		})
@@ -84,7 +90,7 @@ func (f *Frame) buildMenu() {
 	}
 	view.Items = append(view.Items, fyne.NewMenuItemSeparator())
 	setting("Decimal comma", func() bool { return f.settings.comma }, func() { f.settings.comma = !f.settings.comma })
-	help := fyne.NewMenu("Help", fyne.NewMenuItem("This station (F1)", f.help), fyne.NewMenuItem("About Barlitre", f.about))
+	help := fyne.NewMenu("Help", item("This station (F1)", nil, f.help), item("About Barlitre", nil, f.about))
 	m.main = fyne.NewMainMenu(file, edit, job, view, help)
 	m.update(f)
 	f.win.SetMainMenu(m.main)
@@ -121,7 +127,11 @@ func (m *menus) update(f *Frame) {
 	m.said = said
 	m.recent.ChildMenu.Items = nil
 	for _, path := range recent {
-		m.recent.ChildMenu.Items = append(m.recent.ChildMenu.Items, fyne.NewMenuItem(filepath.Base(path)+"  ("+filepath.Dir(path)+")", func() { f.leave(func() { f.open(path) }) }))
+		m.recent.ChildMenu.Items = append(m.recent.ChildMenu.Items, fyne.NewMenuItem(filepath.Base(path)+"  ("+filepath.Dir(path)+")", func() {
+			if !f.asking() {
+				f.leave(func() { f.open(path) })
+			}
+		}))
 	}
 	m.recent.Disabled = len(recent) == 0
 	if m.main != nil {
@@ -130,7 +140,7 @@ func (m *menus) update(f *Frame) {
 }
 
 // undoOr undoes text in a field that has the focus, else the last edit.
-func (f *Frame) undoOr(s fyne.Shortcut, do func() (string, bool)) {
+func (f *Frame) undoOr(s fyne.Shortcut, said string, do func() (string, bool)) {
 	if e, ok := f.win.Canvas().Focused().(fyne.Shortcutable); ok {
 		if t, isText := e.(interface{ SelectedText() string }); isText && t != nil && f.typing() {
 			e.TypedShortcut(s)
@@ -138,8 +148,14 @@ func (f *Frame) undoOr(s fyne.Shortcut, do func() (string, bool)) {
 		}
 	}
 	if name, ok := do(); ok {
-		f.Say(name)
+		f.Say(said + ": " + lowerFirst(name))
 	}
+}
+
+// lowerFirst makes the name of an edit fit behind a colon.
+func lowerFirst(text string) string {
+	r, n := utf8.DecodeRuneInString(text)
+	return string(unicode.ToLower(r)) + text[n:]
 }
 
 // typing reports whether the field with the focus holds text that is not in the model yet.
@@ -153,13 +169,17 @@ func (f *Frame) shortcuts() {
 	f.win.Canvas().SetOnTypedKey(func(k *fyne.KeyEvent) {
 		switch k.Name {
 		case fyne.KeyF1:
-			f.help()
+			if !f.asking() {
+				f.help()
+			}
 		case fyne.KeyEscape:
-			f.player.stop()
+			if !f.escape() {
+				f.player.stop()
+			}
 		}
 	})
 	f.win.Canvas().AddShortcut(&desktop.CustomShortcut{KeyName: fyne.KeyZ, Modifier: fyne.KeyModifierShortcutDefault | fyne.KeyModifierShift}, func(fyne.Shortcut) {
-		f.undoOr(&fyne.ShortcutRedo{}, f.doc.Redo)
+		f.undoOr(&fyne.ShortcutRedo{}, "Done again", f.doc.Redo)
 	})
 }
 

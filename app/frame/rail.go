@@ -23,7 +23,7 @@ type rail struct {
 
 func newRail(f *Frame) *rail {
 	r := &rail{f: f, ground: canvas.NewRectangle(color.Transparent)}
-	box := container.NewVBox()
+	box := container.New(column{})
 	for i, s := range f.stations {
 		item := newRailItem(f, i, s.Name())
 		widgets.Name(item, "rail."+s.Name())
@@ -104,7 +104,7 @@ type railRenderer struct{ r *railItem }
 
 func (x *railRenderer) MinSize() fyne.Size {
 	k := widgets.Scale()
-	return fyne.NewSize(78*k, 52*k)
+	return fyne.NewSize(78*k, railLow*k)
 }
 
 func (x *railRenderer) Layout(size fyne.Size) {

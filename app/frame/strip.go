@@ -10,7 +10,6 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/driver/desktop"
-	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
 	"barlitre/audit/figures"
@@ -19,14 +18,12 @@ import (
 	"barlitre/machines/units"
 )
 
-const stripHeight = 150
-
 // strip shows the tracks of the duty at hand over time, and the clock.
 type strip struct {
 	f       *Frame
 	figure  *clockFigure
 	play    *widgets.TipButton
-	picker  *widget.Select
+	picker  *widgets.Select
 	plot    figures.Plot
 	area    figures.PlotArea
 	content fyne.CanvasObject
@@ -38,7 +35,7 @@ func newStrip(f *Frame) *strip {
 	s.figure = newClockFigure(s)
 	widgets.Name(s.figure, "strip")
 	s.play = widgets.Name(widgets.NewTipButton("Play", "let the clock run (Space in the strip)", s.toggle), "strip.play")
-	s.picker = widgets.Name(widget.NewSelect(nil, func(name string) {
+	s.picker = widgets.Name(widgets.NewSelect(nil, func(name string) {
 		if s.own {
 			return
 		}
@@ -49,8 +46,8 @@ func newStrip(f *Frame) *strip {
 		}
 	}), "strip.duty")
 	f.player = &player{f: f}
-	side := container.NewVBox(s.picker, s.play)
-	s.content = container.NewBorder(nil, nil, container.NewPadded(side), nil, s.figure)
+	side := container.New(&stack{}, s.picker, s.play)
+	s.content = container.NewBorder(nil, nil, side, nil, s.figure)
 	return s
 }
 
@@ -129,6 +126,10 @@ func trackDim(w duty.What, k duty.AxisKind) units.Dim {
 	switch {
 	case w == duty.Command:
 		return units.Ratio
+	case w == duty.SetPressure:
+		return units.Pressure
+	case w == duty.SetFlow:
+		return units.Flow
 	case w == duty.Load && k == duty.Rotary:
 		return units.Torque
 	case w == duty.Load:
@@ -153,23 +154,95 @@ func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
 		p.Text(pen.Pt{X: 16, Y: h / 2}, "The duty has no tracks. Give the axes motion and load on the Duty station.", 12.5, pal.Secondary, pen.Left, false)
 		return nil
 	}
-	p.Push(6, 2, 1)
-	s.area = s.plot.Draw(p, w-20, h-4, pal)
-	p.Pop()
+	s.drawTracks(p, w, h, pal)
+	if s.area.W <= 0 {
+		return nil
+	}
 	x := 6 + s.area.XAt(s.f.clock)
-	p.Polyline([]pen.Pt{{X: x, Y: 14}, {X: x, Y: h - 22}}, false, pal.Danger, pen.Stroke{W: 1.4, C: pal.Danger})
-	p.Polyline([]pen.Pt{{X: x - 5, Y: 8}, {X: x + 5, Y: 8}, {X: x, Y: 16}}, true, pal.Danger, pen.Stroke{})
+	foot := h - 21
+	p.Polyline([]pen.Pt{{X: x, Y: 8}, {X: x, Y: foot}}, false, pal.Danger, pen.Stroke{W: 1.4, C: pal.Danger})
+	p.Polyline([]pen.Pt{{X: x - 5, Y: 1}, {X: x + 5, Y: 1}, {X: x, Y: 9}}, true, pal.Danger, pen.Stroke{})
+	// The values stand over the numbers of the axis: there they hide no phase and no track.
 	text := s.f.Local(s.atClock())
 	tw := p.TextWidth(text, 11, true) + 10
-	bx := x + 8
-	if bx+tw > w-4 {
-		bx = x - 8 - tw
-	}
-	pen.RoundRect(p, bx, 2, tw, 16, 3, pal.Ground, pen.Stroke{W: 1, C: pal.Edge})
-	p.Text(pen.Pt{X: bx + 5, Y: 14}, text, 11, pal.Ink, pen.Left, true)
+	bx := max(6+s.area.X, min(w-4-tw, x-tw/2))
+	pen.RoundRect(p, bx, foot, tw, 17, 3, pal.Ground, pen.Stroke{W: 1, C: pal.Danger})
+	p.Text(pen.Pt{X: bx + 5, Y: foot + 12.5}, text, 11, pal.Ink, pen.Left, true)
 	return []widgets.Part{
 		{Name: "tracks", Text: fmt.Sprint(len(s.plot.Lanes)), X: 6 + s.area.X, Y: 0, W: s.area.W, H: h},
 		{Name: "clock", Text: s.f.Local(units.Number(s.f.clock, 4)) + " s", X: x - 6, Y: 0, W: 12, H: h, Click: true},
+	}
+}
+
+// drawTracks draws as many lanes as can be read at a height; with room for none, the phases
+// alone. What is not drawn is named, and stands at the Duty station.
+func (s *strip) drawTracks(p pen.Pen, w, h float64, pal figures.Palette) {
+	plot := s.plot
+	fit := 0
+	switch {
+	case h >= 0.9*stripHigh:
+		fit = 2
+	case h >= 0.9*stripLow:
+		fit = 1
+	}
+	if more := len(plot.Lanes) - fit; more > 0 && fit > 0 {
+		plot.Lanes = plot.Lanes[:fit]
+		p.Text(pen.Pt{X: 6, Y: 13}, "and "+plural(more, "track", "tracks")+" more", 10, pal.Secondary, pen.Left, false)
+	}
+	p.Push(6, 2, 1)
+	if fit > 0 {
+		s.area = plot.Draw(p, w-20, h-4, pal)
+	} else {
+		s.area = drawPhases(p, plot, w-20, h-4, pal)
+	}
+	p.Pop()
+}
+
+// drawPhases draws a line of time with the names of the phases.
+func drawPhases(p pen.Pen, plot figures.Plot, w, h float64, pal figures.Palette) figures.PlotArea {
+	a := figures.PlotArea{X: 10, W: w - 20, From: plot.From, To: plot.To}
+	if a.W <= 0 || a.To <= a.From {
+		return figures.PlotArea{}
+	}
+	y := h - 24
+	pen.Line(p, pen.Pt{X: a.X, Y: y}, pen.Pt{X: a.X + a.W, Y: y}, pen.Stroke{W: 1.4, C: pal.Ink})
+	tick := func(t float64) {
+		pen.Line(p, pen.Pt{X: a.XAt(t), Y: y - 14}, pen.Pt{X: a.XAt(t), Y: y}, pen.Stroke{W: 1, C: pal.Secondary})
+	}
+	for _, ph := range plot.Phases {
+		tick(ph.From)
+		room := a.XAt(ph.To) - a.XAt(ph.From) - 8
+		if name := pen.Shorten(ph.Name, 11, false, room); room > 20 {
+			p.Text(pen.Pt{X: a.XAt(ph.From) + 5, Y: y - 5}, name, 11, pal.Secondary, pen.Left, false)
+		}
+	}
+	tick(a.To)
+	p.Text(pen.Pt{X: a.X, Y: h - 4}, units.Number(a.From, 3)+" s", 10, pal.Secondary, pen.Left, false)
+	p.Text(pen.Pt{X: a.X + a.W, Y: h - 4}, units.Number(a.To, 4)+" s", 10, pal.Secondary, pen.Right, false)
+	return a
+}
+
+// stack puts the choice of the duty over the play button, close where there is little room.
+type stack struct{}
+
+const stripSide = 111
+
+// MinSize is that of both, close together.
+func (*stack) MinSize(o []fyne.CanvasObject) fyne.Size {
+	k := widgets.Scale()
+	return fyne.NewSize((stripSide+12)*k, o[0].MinSize().Height+o[1].MinSize().Height)
+}
+
+// Layout places both from the top.
+func (*stack) Layout(o []fyne.CanvasObject, size fyne.Size) {
+	k := widgets.Scale()
+	free := size.Height - o[0].MinSize().Height - o[1].MinSize().Height
+	gap := max(0, min(4*k, free/3))
+	y := min(4*k, gap)
+	for _, c := range o {
+		c.Move(fyne.NewPos(4*k, y))
+		c.Resize(fyne.NewSize(size.Width-12*k, c.MinSize().Height))
+		y += c.MinSize().Height + gap
 	}
 }
 
@@ -186,6 +259,8 @@ func (s *strip) atClock() string {
 
 // at interpolates between rows; at a step it takes the row after it.
 func at(t, v []float64, x float64) float64 {
+	n := min(len(t), len(v)) // a faulty duty may have a short track
+	t, v = t[:n], v[:n]
 	i := sort.Search(len(t), func(i int) bool { return t[i] > x })
 	switch {
 	case len(t) == 0:
@@ -207,7 +282,7 @@ type clockFigure struct {
 
 func newClockFigure(s *strip) *clockFigure {
 	c := &clockFigure{s: s}
-	c.Figure = widgets.NewFigure(fyne.NewSize(400, stripHeight), func(p pen.Pen, w, h float64) []widgets.Part {
+	c.Figure = widgets.NewFigure(fyne.NewSize(240, stripSlim), func(p pen.Pen, w, h float64) []widgets.Part {
 		parts := s.draw(p, w, h)
 		if c.focus {
 			pen.Rect(p, 1, 1, w-2, h-2, color.NRGBA{}, pen.Stroke{W: 2, C: s.f.Palette().Gain})

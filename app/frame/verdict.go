@@ -6,9 +6,11 @@ import (
 
 	"fyne.io/fyne/v2"
 
+	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/audit/pen"
+	"barlitre/machines/units"
 )
 
 const verdictHeight = 54
@@ -80,9 +82,19 @@ func (f *Frame) proposal(r *audit.Report) int {
 	return 0
 }
 
+// ofSeveral names the proposal that the verdict is about, where there are several.
+func (f *Frame) ofSeveral() string {
+	r := f.Report()
+	if r == nil || len(r.Decisions) < 2 {
+		return ""
+	}
+	return r.Decisions[f.proposal(r)].Proposal
+}
+
 func (f *Frame) coolerTitle() string {
 	if s := f.solution; s != nil && s.Oil > 0 && s.Air > 0 {
-		return f.Local(fmt.Sprintf("Cooler at %.0f °C / %.0f °C", s.Oil-273.15, s.Air-273.15))
+		degrees := func(t float64) string { return station.TrimZeros(f.Text(t, units.Temperature, 3)) }
+		return "Cooler at " + degrees(s.Oil) + " / " + degrees(s.Air)
 	}
 	return "Cooler"
 }
@@ -136,6 +148,9 @@ func (f *Frame) drawVerdict(p pen.Pen, w, h float64) []widgets.Part {
 	pal := f.Palette()
 	pen.Rect(p, 0, 0, w, h, pal.Card, pen.Stroke{})
 	p.Text(pen.Pt{X: 14, Y: 32}, "Barlitre", 14, pal.Ink, pen.Left, true)
+	if name := f.ofSeveral(); name != "" {
+		p.Text(pen.Pt{X: 14, Y: 46}, pen.Shorten(name, 10, false, 72), 10, pal.Secondary, pen.Left, false)
+	}
 	var parts []widgets.Part
 	state, good := f.stateText()
 	sw := p.TextWidth(state, 11, false)

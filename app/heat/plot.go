@@ -62,6 +62,8 @@ func (p *plot) load() {
 		p.stack = p.stackOf(s, i, d)
 	}
 	p.head.SetText(head)
+	// Below this height the text of the figure would get too small to read: it scrolls.
+	p.figure.SetMin(fyne.NewSize(400, float32(0.86*p.stack.Height())))
 	p.figure.Refresh()
 	p.clock()
 }
@@ -75,7 +77,7 @@ func (p *plot) stackOf(s *audit.Solution, i int, d *duty.Duty) figures.Stack {
 		}
 		lane := figures.HeatLane(c, c.Duties[i], layers, p.unit, write)
 		if c.Duties[i].Plot.Thinned && len(out.Lanes) == 0 {
-			lane.Note = "long cycles: drawn from the lowest and highest value of each stretch"
+			lane.Note = "drawn from the lowest and highest value of each stretch"
 		}
 		out.Lanes = append(out.Lanes, lane)
 	}

@@ -26,10 +26,10 @@ type inputs struct {
 	price, low, high, note *widgets.Field
 	band                   fyne.CanvasObject
 	ofPrice, ofCO2         fyne.CanvasObject // what there is to say of a value, once it is given
-	origin                 *widget.Select
-	credit                 *widget.Check
+	origin                 *widgets.Select
+	credit                 *widgets.Check
 	co2, year              *widgets.Field
-	basis                  *widget.Select
+	basis                  *widgets.Select
 
 	duties   *fyne.Container
 	hours    []*widgets.Field
@@ -54,7 +54,7 @@ func newInputs(ctx station.Context) *inputs {
 		origins = append(origins, string(o))
 	}
 	in.origin = in.choice("payback.price.origin", "Change the origin of the price", "energy.price.origin", origins)
-	in.credit = widgets.Name(widget.NewCheck("returned energy is paid for", in.setCredit), "payback.credit")
+	in.credit = widgets.Name(widgets.NewCheck("returned energy is paid for", in.setCredit), "payback.credit")
 	in.co2 = in.field("payback.co2", in.putCO2)
 	in.year = in.field("payback.co2.year", in.put("Change the year of the CO2 factor", "energy.co2_year"))
 	in.basis = in.choice("payback.co2.basis", "Change the basis of the CO2 factor", "energy.co2_basis", []string{"location", "market"})
@@ -77,8 +77,8 @@ func (in *inputs) field(name string, commit func(string) error) *widgets.Field {
 }
 
 // choice makes a list that sets a word of the file.
-func (in *inputs) choice(name, edit, target string, words []string) *widget.Select {
-	s := widget.NewSelect(words, func(word string) {
+func (in *inputs) choice(name, edit, target string, words []string) *widgets.Select {
+	s := widgets.NewSelect(words, func(word string) {
 		if in.loading {
 			return
 		}
@@ -211,7 +211,7 @@ func said(v circuit.Value) string {
 	return string(v.Origin) + v.Note
 }
 
-func choose(s *widget.Select, word string) {
+func choose(s *widgets.Select, word string) {
 	if s.Selected != word {
 		if word == "" {
 			s.ClearSelected()

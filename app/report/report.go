@@ -21,7 +21,7 @@ type Report struct {
 	ctx      station.Context
 	content  fyne.CanvasObject
 	fields   []textField
-	sections map[pdf.Section]*widget.Check
+	sections map[pdf.Section]*widgets.Check
 	preview  *preview
 	saver    *saver
 }
@@ -34,7 +34,7 @@ type textField struct {
 
 // New makes the station.
 func New(ctx station.Context) station.Station {
-	r := &Report{ctx: ctx, sections: map[pdf.Section]*widget.Check{}}
+	r := &Report{ctx: ctx, sections: map[pdf.Section]*widgets.Check{}}
 	r.preview = newPreview(ctx, r.options)
 	r.saver = newSaver(ctx, r.options)
 	head := container.NewVBox(
@@ -45,7 +45,7 @@ func New(ctx station.Context) station.Station {
 	)
 	parts := container.NewVBox()
 	for _, s := range pdf.Sections() {
-		check := widgets.Name(widget.NewCheck(string(s), nil), "report.section."+slug(string(s)))
+		check := widgets.Name(widgets.NewCheck(string(s), nil), "report.section."+slug(string(s)))
 		check.Checked = true
 		check.OnChanged = func(bool) { r.preview.load() }
 		r.sections[s] = check

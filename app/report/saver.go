@@ -37,7 +37,7 @@ type saver struct {
 	content fyne.CanvasObject
 	buttons []*widgets.TipButton
 	bar     *widget.ProgressBar
-	cancel  *widget.Button
+	cancel  *widgets.Button
 	working *fyne.Container
 	busy    bool
 	stop    context.CancelFunc
@@ -56,7 +56,7 @@ func newSaver(ctx station.Context, options func() pdf.Options) *saver {
 	asCSV := button("report.csv", "Save CSV…", "every time step of each circuit and duty, as tables in a folder", s.saveCSV)
 	asJSON := button("report.json", "Save JSON…", "all results as numbers in SI units", s.saveJSON)
 	s.bar = widgets.Name(widget.NewProgressBar(), "report.progress")
-	s.cancel = widgets.Name(widget.NewButton("Cancel", func() { s.stop() }), "report.cancel")
+	s.cancel = widgets.Name(widgets.NewButton("Cancel", func() { s.stop() }), "report.cancel")
 	s.working = container.NewBorder(nil, nil, nil, s.cancel, s.bar)
 	s.working.Hide()
 	s.content = container.NewVBox(s.working, container.New(&buttonRow{}, asPDF, asCSV, asJSON))

@@ -11,14 +11,14 @@ import (
 // bar holds the buttons above the sheets.
 type bar struct {
 	s                      *Station
-	fit, wide, heat, panel *widget.Button
+	fit, wide, heat, panel *widgets.Button
 	content                *fyne.Container
 }
 
 func newBar(s *Station) *bar {
 	b := &bar{s: s}
-	button := func(name string, do func()) *widget.Button {
-		w := widget.NewButton("", do)
+	button := func(name string, do func()) *widgets.Button {
+		w := widgets.NewButton("", do)
 		w.Importance = widget.LowImportance
 		return widgets.Name(w, name)
 	}
@@ -79,7 +79,7 @@ func flowRows(objects []fyne.CanvasObject, width float32, place func(o fyne.Canv
 
 // reload says on each button what it does next.
 func (b *bar) reload() {
-	set := func(w *widget.Button, text string) {
+	set := func(w *widgets.Button, text string) {
 		if w.Text != text {
 			w.SetText(text)
 		}
@@ -98,17 +98,22 @@ func pick(on bool, yes, no string) string {
 	return no
 }
 
+// pickerWidth leaves room for a name [units at scale 1].
+const pickerWidth = 190
+
 // picker chooses the proposal on the second sheet; it is shown when there are several.
 type picker struct {
 	s       *Station
-	sel     *widget.Select
+	sel     *widgets.Select
+	content *fyne.Container
 	filling bool
 }
 
 func newPicker(s *Station) *picker {
 	p := &picker{s: s}
-	p.sel = widget.NewSelect(nil, p.chosen)
-	p.sel.Hide()
+	p.sel = widgets.NewSelect(nil, p.chosen)
+	p.content = container.New(widgets.Wide(pickerWidth), p.sel)
+	p.content.Hide()
 	widgets.Name(p.sel, "sheet.proposal")
 	return p
 }
@@ -133,7 +138,7 @@ func (p *picker) reload() {
 			names = append(names, c.Name)
 		}
 	}
-	show(p.sel, len(names) > 1)
+	show(p.content, len(names) > 1)
 	p.filling = true
 	defer func() { p.filling = false }()
 	p.sel.Options = names

@@ -153,9 +153,18 @@ func (e *editor) ids() []string {
 	return out
 }
 
+// legendFrom is the height of a sheet under which it needs all room for the drawing [units at scale 1].
+const legendFrom = 130
+
+// legendFoot is the room below the legend [units at scale 1].
+const legendFoot = 5
+
 // legendHeight is the strip at the lower edge [units].
 func (e *editor) legendHeight() float64 {
-	return figures.LegendHeight * legendAt * float64(widgets.Scale())
+	if e.Size().Height < legendFrom*widgets.Scale() {
+		return 0
+	}
+	return (figures.LegendHeight*legendAt + legendFoot) * float64(widgets.Scale())
 }
 
 // room is the size of the part of the widget that shows the drawing [units].

@@ -286,6 +286,7 @@ func (f *findings) TypedKey(k *fyne.KeyEvent) {
 		f.open(f.at)
 		return
 	default:
+		widgets.PassKey(f, k)
 		return
 	}
 	y := 0.0

@@ -6,6 +6,8 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/driver/desktop"
+
+	"barlitre/app/widgets"
 )
 
 var (
@@ -95,7 +97,7 @@ func (e *editor) TypedKey(k *fyne.KeyEvent) {
 		case len(e.selected) > 0:
 			e.choose("", false)
 		default:
-			e.pass(k)
+			widgets.PassKey(e, k)
 		}
 	case fyne.KeyTab:
 		e.nextBlock()
@@ -110,14 +112,7 @@ func (e *editor) TypedKey(k *fyne.KeyEvent) {
 	case fyne.KeyDown:
 		e.arrow(0, 1)
 	default:
-		e.pass(k)
-	}
-}
-
-// pass hands a key on to the window, which sees none while a widget has the focus.
-func (e *editor) pass(k *fyne.KeyEvent) {
-	if c := fyne.CurrentApp().Driver().CanvasForObject(e); c != nil && c.OnTypedKey() != nil {
-		c.OnTypedKey()(k)
+		widgets.PassKey(e, k)
 	}
 }
 

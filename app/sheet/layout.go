@@ -41,7 +41,7 @@ func (s *Station) layOut() *fyne.Container {
 
 // MinSize lets the window be small; the sheets and the panel scroll.
 func (l pageLayout) MinSize([]fyne.CanvasObject) fyne.Size {
-	return fyne.NewSize((panelWidth+200)*widgets.Scale(), 280)
+	return fyne.NewSize((panelWidth+200)*widgets.Scale(), 260*widgets.Scale())
 }
 
 // Layout places all and hides what does not belong on the page now.
@@ -190,7 +190,7 @@ func newCard(s *Station, index int) *card {
 	var right fyne.CanvasObject
 	if index == 1 {
 		c.picker = newPicker(s)
-		right = c.picker.sel
+		right = c.picker.content
 	}
 	head := container.NewBorder(nil, nil, nil, right, c.head)
 	inner := container.NewBorder(head, nil, nil, nil, s.editors[index])

@@ -6,6 +6,8 @@ import (
 	"fyne.io/fyne/v2/driver/desktop"
 	"fyne.io/fyne/v2/theme"
 	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/widgets"
 )
 
 // link is a word that does something: smaller than a button, and reached by Tab.
@@ -51,6 +53,8 @@ func (l *link) TypedKey(k *fyne.KeyEvent) {
 	switch k.Name {
 	case fyne.KeyReturn, fyne.KeyEnter, fyne.KeySpace:
 		l.do()
+	default:
+		widgets.PassKey(l, k)
 	}
 }
 

@@ -7,7 +7,6 @@ import (
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
 	"barlitre/audit"
@@ -21,7 +20,7 @@ import (
 type live struct {
 	p       *panel
 	figure  *widgets.Figure
-	choice  *widget.Select
+	choice  *widgets.Select
 	plot    *widgets.ClockPlot
 	content *fyne.Container
 	chosen  map[string]string // course to plot, by kind of block
@@ -39,7 +38,7 @@ type liveRow struct {
 func newLive(p *panel) *live {
 	l := &live{p: p, chosen: map[string]string{}}
 	l.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), l.draw), "sheet.live")
-	l.choice = widgets.Name(widget.NewSelect(nil, l.choose), "sheet.live.course")
+	l.choice = widgets.Name(widgets.NewSelect(nil, l.choose), "sheet.live.course")
 	l.plot = widgets.Name(widgets.NewClockPlot(fyne.NewSize(100, 124), func() figures.Palette { return p.s.ctx.Palette() }), "sheet.live.plot")
 	l.plot.Moved = func(t float64) { p.s.ctx.SetClock(t) }
 	l.plot.Value = l.at

@@ -20,7 +20,7 @@ type numberRow struct {
 	param   *circuit.Param
 	circuit string
 	block   string
-	origin  *widget.Select
+	origin  *widgets.Select
 	more    *link
 	extra   []*fieldRow
 	about   *widget.Label
@@ -33,7 +33,7 @@ func newNumberRow(p *panel, circuitName, block string, q *circuit.Param, target 
 	r := &numberRow{param: q, circuit: circuitName, block: block}
 	r.fieldRow = newFieldRow(p, q.Title, "field."+q.Key, target, r.take)
 	r.value = r.shown
-	r.origin = widget.NewSelect(words(circuit.Origins), r.setOrigin)
+	r.origin = widgets.NewSelect(words(circuit.Origins), r.setOrigin)
 	r.origin.PlaceHolder = "origin?"
 	widgets.Name(r.origin, "field."+q.Key+".origin")
 	r.more = newLink("more", r.toggle)

@@ -55,7 +55,7 @@ func (e *editor) draw(p pen.Pen) {
 	p.ClipRect(0, 0, w, h)
 	sh.Draw(p, e.x+ox*e.zoom, e.y+oy*e.zoom, e.zoom, e.state, e.opt)
 	p.Unclip()
-	if e.state != nil && e.ownLegend() {
+	if e.state != nil && e.legendHeight() > 0 && e.ownLegend() {
 		e.drawLegend(p, w, h)
 	}
 }

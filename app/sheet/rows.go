@@ -229,14 +229,14 @@ func (r *fieldRow) restore() {
 // selectRow is a row with a choice.
 type selectRow struct {
 	*base
-	sel     *widget.Select
+	sel     *widgets.Select
 	value   func() (selected, hint string)
 	filling bool
 }
 
 func newSelectRow(p *panel, title, name, target string, options []string) *selectRow {
 	r := &selectRow{base: newBase(p, title, target)}
-	r.sel = widget.NewSelect(options, func(text string) {
+	r.sel = widgets.NewSelect(options, func(text string) {
 		if r.filling {
 			return
 		}

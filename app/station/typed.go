@@ -26,11 +26,25 @@ func Shown(ctx Context, si float64, typed units.Unit, d units.Dim) string {
 	u := units.Preferred(d, ctx.System())
 	money := d == units.Money || d == units.EnergyPrice
 	if typed.Factor == 0 || (typed.Symbol != u.Symbol && !money) {
-		return ctx.Text(si, d, 5)
+		return TrimZeros(ctx.Text(si, d, 5))
 	}
 	text := strings.TrimSpace(strings.TrimSuffix(units.FileText(si, typed), typed.Symbol))
 	if label := typed.Label(); label != "" {
 		text += "\u202f" + label
 	}
 	return ctx.Local(text)
+}
+
+// TrimZeros drops the zeros behind a decimal sign that only fill up the digits: with a
+// decimal comma 82,400 could be read as thousands.
+func TrimZeros(text string) string {
+	end := strings.IndexFunc(text, func(r rune) bool { return !strings.ContainsRune("−-0123456789.,", r) })
+	if end < 0 {
+		end = len(text)
+	}
+	number := text[:end]
+	if strings.ContainsAny(number, ".,") {
+		number = strings.TrimRight(strings.TrimRight(number, "0"), ".,")
+	}
+	return number + text[end:]
 }

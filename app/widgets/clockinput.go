@@ -52,7 +52,7 @@ func (c *ClockPlot) TypedRune(rune) {}
 
 // TypedKey moves the clock: arrows by 1/200 of what is shown, page keys by a twentieth.
 func (c *ClockPlot) TypedKey(k *fyne.KeyEvent) {
-	if c.Moved == nil || len(c.area.Lanes) == 0 {
+	if passHelp(c, k) || c.Moved == nil || len(c.area.Lanes) == 0 {
 		return
 	}
 	span := c.area.To - c.area.From

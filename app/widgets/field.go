@@ -1,6 +1,7 @@
 package widgets
 
 import (
+	"image/color"
 	"strings"
 
 	"fyne.io/fyne/v2"
@@ -92,6 +93,12 @@ func (f *Field) Typing() bool { return f.Text != f.value }
 // Bad reports whether what stands in the field was refused.
 func (f *Field) Bad() bool { return f.bad }
 
+// FocusGained scrolls it into sight.
+func (f *Field) FocusGained() {
+	f.Entry.FocusGained()
+	reveal(f)
+}
+
 // FocusLost hands the value over.
 func (f *Field) FocusLost() {
 	f.Entry.FocusLost()
@@ -106,7 +113,38 @@ func (f *Field) TypedKey(k *fyne.KeyEvent) {
 		f.say("")
 		return
 	}
-	f.Entry.TypedKey(k)
+	if !passHelp(f, k) {
+		f.Entry.TypedKey(k)
+	}
+}
+
+// CreateRenderer is for the toolkit. A text longer than the field scrolls with the
+// cursor; a bar under it would cover the text.
+func (f *Field) CreateRenderer() fyne.WidgetRenderer {
+	r := f.Entry.CreateRenderer()
+	for _, o := range r.Objects() {
+		container.NewThemeOverride(o, barless{})
+	}
+	return r
+}
+
+// barless is the theme in force with scroll bars that take no room.
+type barless struct{}
+
+func (barless) Color(n fyne.ThemeColorName, v fyne.ThemeVariant) color.Color {
+	if n == theme.ColorNameScrollBar || n == theme.ColorNameScrollBarBackground || n == theme.ColorNameShadow {
+		return color.Transparent
+	}
+	return fyne.CurrentApp().Settings().Theme().Color(n, v)
+}
+func (barless) Font(s fyne.TextStyle) fyne.Resource {
+	return fyne.CurrentApp().Settings().Theme().Font(s)
+}
+func (barless) Icon(n fyne.ThemeIconName) fyne.Resource {
+	return fyne.CurrentApp().Settings().Theme().Icon(n)
+}
+func (barless) Size(n fyne.ThemeSizeName) float32 {
+	return fyne.CurrentApp().Settings().Theme().Size(n)
 }
 
 // Cursor is that of text.

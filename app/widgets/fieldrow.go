@@ -44,7 +44,7 @@ func (l *rowLayout) Layout(objects []fyne.CanvasObject, size fyne.Size) {
 	name := objects[0].MinSize().Height
 	h := objects[1].MinSize().Height
 	x, y := rowName*Scale(), float32(0)
-	if l.stacked = size.Width < 2*x; l.stacked {
+	if l.stacked = size.Width < max(2*x, x+objects[1].MinSize().Width); l.stacked {
 		objects[0].Move(fyne.NewPos(0, 0))
 		objects[0].Resize(fyne.NewSize(size.Width, name))
 		x, y = 0, name

@@ -50,6 +50,8 @@ func (e *cellEntry) TypedKey(k *fyne.KeyEvent) {
 			by = -1
 		}
 		e.leave(0, by)
+	case fyne.KeyF1:
+		PassKey(t, k)
 	default:
 		e.Entry.TypedKey(k)
 	}

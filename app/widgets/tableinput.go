@@ -210,6 +210,8 @@ func (t *Table) TypedKey(k *fyne.KeyEvent) {
 		t.enter()
 	case fyne.KeyEscape:
 		t.giveUp()
+	default:
+		PassKey(t, k)
 	}
 }
 

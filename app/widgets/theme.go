@@ -1,6 +1,8 @@
 package widgets
 
 import (
+	"bytes"
+	"encoding/binary"
 	"image/color"
 
 	"fyne.io/fyne/v2"
@@ -45,7 +47,9 @@ func (t Theme) Color(name fyne.ThemeColorName, _ fyne.ThemeVariant) color.Color 
 		return p.Heat
 	case theme.ColorNameSeparator, theme.ColorNameInputBorder:
 		return p.Edge
-	case theme.ColorNameFocus, theme.ColorNameSelection:
+	case theme.ColorNameFocus:
+		return faint(p.Ink, 60) // to be seen on buttons in the colour of gain, too
+	case theme.ColorNameSelection:
 		return faint(p.Gain, 70)
 	case theme.ColorNameHover:
 		return faint(p.Ink, 18)
@@ -77,10 +81,31 @@ func faint(c color.NRGBA, alpha uint8) color.NRGBA {
 }
 
 var (
-	regular = fyne.NewStaticResource("regular.ttf", assets.FontRegular)
-	bold    = fyne.NewStaticResource("bold.ttf", assets.FontBold)
-	oblique = fyne.NewStaticResource("oblique.ttf", assets.FontOblique)
+	regular = fyne.NewStaticResource("regular.ttf", roomy(assets.FontRegular))
+	bold    = fyne.NewStaticResource("bold.ttf", roomy(assets.FontBold))
+	oblique = fyne.NewStaticResource("oblique.ttf", roomy(assets.FontOblique))
 )
+
+// roomy returns a font whose line is one part in thirteen deeper. The toolkit rounds
+// the base line of a text down to a whole pixel but not the height of its picture,
+// which cuts the lowest pixels off letters such as y and all of an underscore.
+func roomy(font []byte) []byte {
+	const tableRecord, header, descender = 16, 12, 6 // sizes and place in the font file
+	out := bytes.Clone(font)
+	for i := range int(binary.BigEndian.Uint16(out[4:])) {
+		r := out[header+tableRecord*i:]
+		if string(r[:4]) != "hhea" {
+			continue
+		}
+		at := out[binary.BigEndian.Uint32(r[8:])+descender:]
+		old := int16(binary.BigEndian.Uint16(at))
+		binary.BigEndian.PutUint16(at, uint16(old-unitsPerEm/13))
+	}
+	return out
+}
+
+// unitsPerEm is the grid of the embedded fonts.
+const unitsPerEm = 2048
 
 // Font returns the embedded family.
 func (t Theme) Font(s fyne.TextStyle) fyne.Resource {

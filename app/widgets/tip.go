@@ -93,6 +93,19 @@ func NewTipButton(text, tip string, do func()) *TipButton {
 // DumpText is for scripts.
 func (b *TipButton) DumpText() string { return b.Text }
 
+// FocusGained scrolls it into sight.
+func (b *TipButton) FocusGained() {
+	b.Button.FocusGained()
+	reveal(b)
+}
+
+// TypedKey presses by Space.
+func (b *TipButton) TypedKey(k *fyne.KeyEvent) {
+	if !passHelp(b, k) {
+		b.Button.TypedKey(k)
+	}
+}
+
 // MouseIn starts the wait for the tooltip.
 func (b *TipButton) MouseIn(ev *desktop.MouseEvent) {
 	b.Button.MouseIn(ev)

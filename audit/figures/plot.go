@@ -270,7 +270,16 @@ func widened(lo, hi, share float64) (float64, float64) {
 // laneTicks returns the ticks of a lane of height h in labelled numbers.
 func (d *plotLayout) laneTicks(i int, h float64) ([]float64, int) {
 	l, k := d.area.Lanes[i], pow10(d.exps[i])
-	return ticks(l.Lo/k, l.Hi/k, int(max(2, min(6, h/20))))
+	n := int(max(2, min(6, h/20)))
+	at, dec := ticks(l.Lo/k, l.Hi/k, n)
+	for more := n + 1; len(at) < 2 && more <= 3*n; more++ { // one number gives no scale
+		finer, d := ticks(l.Lo/k, l.Hi/k, more)
+		if len(finer) > 1 && (finer[1]-finer[0])*k/(l.Hi-l.Lo)*h < smallSize+3 {
+			break // they would touch
+		}
+		at, dec = finer, d
+	}
+	return at, dec
 }
 
 // lane draws one lane.

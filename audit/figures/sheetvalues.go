@@ -18,8 +18,9 @@ var telling = map[string][]struct {
 }{
 	"pressure_source": {{"%", []string{"pressure"}}},
 	"electric_motor":  {{"%", []string{"rated_power"}}},
+	"engine":          {{"%", []string{"rated_power"}}},
 	"converter":       {{"%", []string{"rated_power"}}},
-	"pump":            {{"% · %", []string{"displacement", "set_pressure"}}, {"%", []string{"displacement"}}},
+	"pump":            {{"% · %", []string{"displacement", "set_pressure"}}, {"% · %", []string{"displacement", "power_limit"}}, {"%", []string{"displacement"}}},
 	"charge_pump":     {{"% · %", []string{"displacement", "charge"}}},
 	"motor":           {{"%", []string{"displacement"}}},
 	"cylinder":        {{"%/% × %", []string{"bore", "rod", "stroke"}}, {"%/%", []string{"bore", "rod"}}},
@@ -29,8 +30,24 @@ var telling = map[string][]struct {
 	"pilot_check":     {{"1 : %", []string{"pilot_ratio"}}},
 	"counterbalance":  {{"%", []string{"setting"}}},
 	"compensator":     {{"%", []string{"drop"}}},
+	"unloading_pilot": {{"%", []string{"setting"}}},
 	"orifice":         {{"ø %", []string{"diameter"}}, {"%", []string{"nominal_flow"}}},
 	"line":            {{"% × %", []string{"diameter", "length"}}},
+	"double_rod":      {{"%/% × %", []string{"bore", "rod", "stroke"}}, {"%/%", []string{"bore", "rod"}}},
+	"plunger":         {{"ø %", []string{"diameter"}}},
+	"accumulator":     {{"% · %", []string{"volume", "precharge"}}},
+	"unloading":       {{"% / %", []string{"unloads", "loads"}}},
+	"flywheel":        {{"%", []string{"inertia"}}},
+	"reducing":        {{"%", []string{"set"}}},
+	"sequence":        {{"%", []string{"set"}}},
+	"flow_control":    {{"%", []string{"set_flow"}}},
+	"flow_control_3":  {{"%", []string{"set_flow"}}},
+	"throttle_check":  {{"%", []string{"nominal_flow"}}},
+	"section_6_3":     {{"%", []string{"nominal_flow"}}},
+	"flow_divider":    {{"%", []string{"displacement"}}},
+	"gearbox":         {{"i = %", []string{"ratio"}}},
+	"flushing":        {{"%", []string{"opens"}}},
+	"cooler":          {{"%", []string{"nominal_flow"}}},
 	"filter":          {{"%", []string{"nominal_flow"}}},
 }
 
@@ -97,7 +114,16 @@ func shownUnit(v circuit.Value, d units.Dim, sys units.System) units.Unit {
 
 // moves tells whether the block has an axis of the duty on it.
 func (p *part) moves() bool {
-	return (p.block.Kind == "cylinder" || p.block.Kind == "motor") && p.block.Word("axis") != ""
+	return (p.isCylinder() || p.block.Kind == "motor") && p.block.Word("axis") != ""
+}
+
+// isCylinder tells whether the block moves along a line.
+func (p *part) isCylinder() bool {
+	switch p.block.Kind {
+	case "cylinder", "double_rod", "plunger":
+		return true
+	}
+	return false
 }
 
 // varies tells whether a pump or electric motor is set by a control, so that its
@@ -138,10 +164,10 @@ func (p *part) live(st *SheetState, sys units.System) string {
 		return units.Format(v, u, digits), ok
 	}
 	switch {
-	case p.block.Kind == "valve":
+	case p.block.Kind == "valve", p.block.Kind == "section_6_3":
 		text, ok := show("u", units.Ratio, -0.888)
 		return given("open "+strings.TrimPrefix(text, "−"), ok)
-	case p.block.Kind == "cylinder":
+	case p.isCylinder():
 		v, ok := show("v", units.Velocity, -0.888)
 		f, ok2 := show("F", units.Force, -888e3)
 		return given(v+" · "+f, ok && ok2)

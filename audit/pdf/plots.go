@@ -94,9 +94,11 @@ func (l *layout) plot(lanes []figures.Lane, d *duty.Duty) {
 
 // dims names the quantity of a track, by linear and rotary axes.
 var dims = map[duty.What][2]units.Dim{
-	duty.Speed:    {units.Velocity, units.AngularSpeed},
-	duty.Position: {units.Length, units.Angle},
-	duty.Load:     {units.Force, units.Torque},
+	duty.Speed:       {units.Velocity, units.AngularSpeed},
+	duty.Position:    {units.Length, units.Angle},
+	duty.Load:        {units.Force, units.Torque},
+	duty.SetPressure: {units.Pressure, units.Pressure},
+	duty.SetFlow:     {units.Flow, units.Flow},
 }
 
 // asked returns the lanes of a duty: what it gives, axis by axis, and how a

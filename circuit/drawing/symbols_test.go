@@ -10,7 +10,7 @@ import (
 var portsOf = map[string]string{
 	"tank": "T", "pressure_source": "P", "junction": "1 2 3 4", "electric_motor": "shaft E", "converter": "M L",
 	"pump_fixed_1": "shaft S P D", "pump_fixed_2": "shaft S P D", "pump_var_1": "shaft S P D", "pump_var_2": "shaft S P D",
-	"pump_var_pc": "shaft S P D", "pump_var_ls": "shaft S P D LS",
+	"pump_var_pc": "shaft S P D", "pump_var_power": "shaft S P D", "pump_var_pq": "shaft S P D", "unloading_pilot": "P T X", "unloading": "P A T", "diesel_engine": "shaft", "pump_var_ls": "shaft S P D LS",
 	"motor_fixed_1": "shaft A B D", "motor_fixed_2": "shaft A B D", "motor_var": "shaft A B D",
 	"relief": "P T", "check": "in out", "pilot_check": "V C X", "orifice": "A B",
 	"dcv_4_3_closed": "P A B T LS", "dcv_4_3_open": "P A B T LS", "dcv_4_3_tandem": "P A B T LS", "dcv_4_3_float": "P A B T LS",
@@ -18,6 +18,14 @@ var portsOf = map[string]string{
 	"dcv_4_3_prop_tandem": "P A B T LS", "dcv_4_3_prop_float": "P A B T LS",
 	"compensator": "P A LS", "counterbalance": "V C X", "line": "A B", "filter": "A B", "filter_bypass": "A B",
 	"cylinder": "A B rod", "charge_pump": "shaft S P T D", "charge_set": "shaft S P T D", "tank_return": "T", "cyl_diff": "A B rod", "relief_direct": "P T", "check_pilot": "V C X", "shuttle": "X Y A",
+	"cyl_double_rod": "A B rod", "cyl_plunger": "A rod", "gearbox": "in out", "flow_divider_gear": "A B P", "flushing": "A B T",
+	"cooler": "A B", "cooler_bypass": "A B", "gauge": "P", "flow_meter": "A B",
+	"reducing": "P A T", "reducing_check": "P A T", "reducing_3way": "P A T", "reducing_3way_check": "P A T",
+	"sequence": "P A D", "sequence_check": "P A D", "sequence_external": "P A X D", "sequence_external_check": "P A X D",
+	"flow_sharing": "P A LS", "flow_sharing_check": "P A LS", "flow_2way": "A B", "flow_2way_check": "A B", "flow_3way": "P A T", "throttle_check": "A B",
+	"shuttle_flow": "X Y A", "dcv_6_3": "C1 C2 P A B T", "pump_var_nf": "shaft S P D LS",
+	"dcv_4_3_regen_closed": "P A B T LS", "dcv_4_3_regen_open": "P A B T LS", "dcv_4_3_regen_tandem": "P A B T LS", "dcv_4_3_regen_float": "P A B T LS",
+	"dcv_4_3_prop_regen_closed": "P A B T LS", "dcv_4_3_prop_regen_open": "P A B T LS", "dcv_4_3_prop_regen_tandem": "P A B T LS", "dcv_4_3_prop_regen_float": "P A B T LS",
 }
 
 func all(t *testing.T) []Symbol {
@@ -206,6 +214,27 @@ func TestValveCentres(t *testing.T) {
 	}
 }
 
+// At rest a valve that opens by pressure has its arrow beside the axis of its ports,
+// one that closes by pressure on it.
+func TestArrowsShowRest(t *testing.T) {
+	for name, x := range map[string]float64{"relief": -1, "sequence": -1, "sequence_external": -1, "reducing": 0, "flow_sharing": 0, "compensator": 0} {
+		s, _ := Lookup(name)
+		arrows := 0
+		for _, p := range s.Prims {
+			if p.Part != "flow" || p.Kind != Line {
+				continue
+			}
+			arrows++
+			if p.Pts[0].X != x {
+				t.Errorf("%s: arrow at %v", name, p.Pts[0])
+			}
+		}
+		if arrows != 1 {
+			t.Errorf("%s has %d arrows", name, arrows)
+		}
+	}
+}
+
 // A filled triangle points out of a pump and into a motor, and there is
 // one for each flow direction.
 func TestTrianglesShowPumpAndMotor(t *testing.T) {
@@ -243,7 +272,9 @@ func TestTrianglesShowPumpAndMotor(t *testing.T) {
 
 // Oil lifts the ball off its seat: the tip of the seat is on the inlet side.
 func TestCheckValvesOpenTowardsTheirOutlet(t *testing.T) {
-	for name, ports := range map[string][2]string{"check": {"in", "out"}, "check_spring": {"in", "out"}, "pilot_check": {"V", "C"}} {
+	for name, ports := range map[string][2]string{"check": {"in", "out"}, "check_spring": {"in", "out"}, "pilot_check": {"V", "C"},
+		"reducing_check": {"A", "P"}, "reducing_3way_check": {"A", "P"}, "sequence_check": {"A", "P"}, "sequence_external_check": {"A", "P"},
+		"flow_sharing_check": {"A", "P"}, "flow_2way_check": {"B", "A"}, "throttle_check": {"B", "A"}} {
 		s, _ := Lookup(name)
 		in, _ := s.Port(ports[0])
 		out, _ := s.Port(ports[1])

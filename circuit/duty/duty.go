@@ -42,15 +42,23 @@ type What int
 
 // The quantities a track may give.
 const (
-	Speed    What = iota // m/s or rad/s
-	Position             // m or rad; speed is taken from it by central differences
-	Load                 // N or N·m
-	Command              // −1..1: opening of a valve, setting of a pump, share of top speed of a motor
+	Speed       What = iota // m/s or rad/s
+	Position                // m or rad; speed is taken from it by central differences
+	Load                    // N or N·m
+	Command                 // −1..1: opening of a valve, setting of a pump, share of top speed of a motor
+	SetPressure             // Pa, >= 0; of a block
+	SetFlow                 // m³/s, >= 0; of a block
 )
 
-var whatNames = [...]string{"speed", "position", "load", "command"}
+var whatNames = [...]string{"speed", "position", "load", "command", "set_pressure", "set_flow"}
 
 func (w What) String() string { return whatNames[w] }
+
+// OfAxis reports whether an axis may have a track of this quantity.
+func (w What) OfAxis() bool { return w <= Command }
+
+// OfBlock reports whether a block may have a track of this quantity.
+func (w What) OfBlock() bool { return w >= Command }
 
 // WhatNamed finds a quantity by the word used in files.
 func WhatNamed(word string) (What, bool) {
@@ -187,6 +195,10 @@ func (d *Duty) Check() []Problem {
 			}
 			if tr.What == Command && math.Abs(v) > 1+1e-9 {
 				bad(name, "value %d is %g; a command lies between -1 and 1", i+1, v)
+				break
+			}
+			if (tr.What == SetPressure || tr.What == SetFlow) && v < 0 {
+				bad(name, "value %d is below 0; a set pressure or set flow starts at 0", i+1)
 				break
 			}
 		}

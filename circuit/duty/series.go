@@ -23,13 +23,19 @@ type AxisSeries struct {
 	Top      float64 // largest |speed| of the duty, 0 when motion is not given
 }
 
+// Control names a track that a duty gives for a block.
+type Control struct {
+	Block string
+	What  What // Command, SetPressure or SetFlow
+}
+
 // Series is a duty laid out in time steps: the rows of the duty, the steps
 // between them, and the instants at which an axis comes to rest or sets off,
 // each as two time steps at one time (before, after).
 type Series struct {
 	T        []float64
 	Axes     []AxisSeries
-	Commands map[string][]float64 // of commanded blocks, by id
+	Commands map[Control][]float64
 	Repeats  bool
 	Duty     *Duty
 }
@@ -56,7 +62,7 @@ func (d *Duty) Series(axes []Axis, inertia bool) *Series {
 		limit[i] = StandstillShare * rest[i].top()
 	}
 	grid := d.grid(rest, limit, inertia)
-	s := &Series{Repeats: d.Repeats, Duty: d, Commands: map[string][]float64{}}
+	s := &Series{Repeats: d.Repeats, Duty: d, Commands: map[Control][]float64{}}
 	for _, g := range grid {
 		s.T = append(s.T, g.t)
 	}
@@ -90,7 +96,7 @@ func (d *Duty) Series(axes []Axis, inertia bool) *Series {
 	}
 	for _, tr := range d.Tracks {
 		if !isAxis[tr.Of] {
-			s.Commands[tr.Of] = sampled(&column{d.Time, tr.Values}, grid)
+			s.Commands[Control{tr.Of, tr.What}] = sampled(&column{d.Time, tr.Values}, grid)
 		}
 	}
 	return s
@@ -104,14 +110,14 @@ func (s *Series) Part(from, to int) *Series {
 		}
 		return v[from:to]
 	}
-	p := &Series{T: s.T[from:to], Repeats: s.Repeats, Duty: s.Duty, Commands: map[string][]float64{}}
+	p := &Series{T: s.T[from:to], Repeats: s.Repeats, Duty: s.Duty, Commands: map[Control][]float64{}}
 	for _, a := range s.Axes {
 		a.Speed, a.Accel, a.Load, a.Command = cut(a.Speed), cut(a.Accel), cut(a.Load), cut(a.Command)
 		a.Standing = a.Standing[from:to]
 		p.Axes = append(p.Axes, a)
 	}
-	for id, v := range s.Commands {
-		p.Commands[id] = v[from:to]
+	for c, v := range s.Commands {
+		p.Commands[c] = v[from:to]
 	}
 	return p
 }
