@@ -45,6 +45,9 @@ func edited(t *testing.T, path, old, new string) string {
 }
 
 func TestExitCodes(t *testing.T) {
+	window := openWindow // a build may have one; here it must stay shut
+	openWindow = nil
+	defer func() { openWindow = window }()
 	missing := filepath.Join(t.TempDir(), "none.yaml")
 	noRest := edited(t, press, "pump_at_rest:", "note2:")
 	for _, c := range []struct {

@@ -38,9 +38,10 @@ const minResistance = 1e-10
 // eval is one evaluation of all rows. Blocks read with val and add with flow, g and d.
 type eval struct {
 	x, fix []float64
-	g, jac []float64
+	g      []float64
 	gfix   []float64 // flow leaving the fixed nodes
-	n      int
+	slopes *balance.Slopes
+	skip   slot // < 0 where no slopes are wanted
 }
 
 func (e *eval) val(s slot) float64 {
@@ -61,8 +62,8 @@ func (e *eval) add(s slot, v float64) {
 
 // d adds the derivative of row r by unknown c.
 func (e *eval) d(r, c slot, v float64) {
-	if r >= 0 && c >= 0 {
-		e.jac[int(r)*e.n+int(c)] += v
+	if r|c|e.skip >= 0 {
+		e.slopes.Add(int(r), int(c), v)
 	}
 }
 
@@ -95,6 +96,92 @@ func (e *eval) conduct(a, b slot, k float64) float64 {
 	e.d(b, a, -k)
 	e.d(b, b, k)
 	return q
+}
+
+// hot is what every step of a run needs, sorted out once.
+type hot struct {
+	leaky      []slot // node unknowns with a leak to tank
+	free       []shaft
+	gears      []*gearboxModel
+	onShafts   []shaftBooker
+	converters []*converterModel
+	slowly     []slowModel
+	topForce   float64 // most that a unit of a force row stands for [N]
+	solved     float64 // instant of the last balance [s]
+	asked      []asked // by axis, of the last balance
+}
+
+// asked is what is asked of an axis.
+type asked struct{ demand, load, command float64 }
+
+// moved reports whether anything else is asked of the axes than at the last balance.
+func (r *run) moved() bool {
+	moved := false
+	for i := range r.step.axes {
+		a := &r.step.axes[i]
+		now := asked{a.demand, a.load, a.command}
+		moved = moved || now != r.asked[i]
+		r.asked[i] = now
+	}
+	return moved
+}
+
+// sort fills hot, once the models are bound.
+func (r *run) sort() {
+	r.asked = make([]asked, len(r.axes))
+	for _, n := range r.nodes {
+		if n.slot >= 0 && !n.pilot {
+			r.leaky = append(r.leaky, n.slot)
+		}
+	}
+	for _, s := range r.shafts {
+		if s.free && len(s.way) == 0 {
+			r.free = append(r.free, s)
+		}
+	}
+	for i := range r.rows {
+		if row := &r.rows[i]; row.kind == forceRow {
+			r.topForce = math.Max(r.topForce, r.forceUnit(row))
+		}
+	}
+	for _, m := range r.models {
+		if g, ok := m.(*gearboxModel); ok {
+			r.gears = append(r.gears, g)
+		}
+		if s, ok := m.(shaftBooker); ok {
+			r.onShafts = append(r.onShafts, s)
+		}
+		if c, ok := m.(*converterModel); ok {
+			r.converters = append(r.converters, c)
+		}
+		if s, ok := m.(slowModel); ok {
+			r.slowly = append(r.slowly, s)
+		}
+	}
+}
+
+// Eval adds all rows: it is the balance.Problem.
+func (r *run) Eval(x, g []float64, j *balance.Slopes) {
+	e := &r.ev
+	e.x, e.g, e.slopes, e.skip = x, g, j, 0
+	if j == nil {
+		e.skip = -1
+	}
+	clear(e.gfix)
+	for _, n := range r.leaky {
+		k := r.step.restK[n]
+		g[n] += leak*x[n] + k*(x[n]-r.step.rest[n])
+		e.d(n, n, leak+k)
+	}
+	for i := range r.free {
+		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
+		s := &r.free[i]
+		e.add(s.sigma, -e.val(s.speed))
+		e.d(s.sigma, s.speed, -1)
+	}
+	for _, m := range r.models {
+		m.eval(e)
+	}
 }
 
 // throat is a turbulent restriction, scaled: drop = q·√(q²+ql²)/k², laminar below

@@ -65,13 +65,14 @@ type run struct {
 	switches []switching
 	haste    float64 // by how much axes move faster than asked; see approach
 	scales
+	hot
 }
 
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
 	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
 	x, fix := make([]float64, c.n), make([]float64, c.nfix)
-	r.ev = eval{x: x, fix: fix, gfix: make([]float64, c.nfix), n: c.n}
+	r.ev = eval{x: x, fix: fix, gfix: make([]float64, c.nfix)}
 	r.step = step{axes: make([]axisStep, len(c.axes)), commands: s.Commands, atRest: c.circuit.PumpAtRest, solver: r.solver,
 		x: x, fix: fix, rest: make([]float64, c.n), restK: make([]float64, c.n), pScale: r.scales.p}
 	for i := range r.rows {
@@ -105,6 +106,7 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 			r.topLoad[i] = math.Max(r.topLoad[i], math.Abs(f))
 		}
 	}
+	r.sort()
 	r.book = booking{scales: r.scales, cond: cond, step: &r.step, sig: make([]float64, len(c.signals)), pow: make([]float64, len(c.channels)),
 		shaft: make([]shaftBook, len(c.shafts)), el: make([]float64, c.electric)}
 	r.sample = Sample{Signals: r.book.sig, Power: r.book.pow, Axes: make([]AxisNow, len(c.axes)), Void: make([]float64, len(c.nodes))}
@@ -119,31 +121,6 @@ func (c *Compiled) flowScale(p []float64) float64 {
 		q = math.Max(q, s.size(p)*usual)
 	}
 	return q
-}
-
-// Eval adds all rows: it is the balance.Problem.
-func (r *run) Eval(x, g, jac []float64) {
-	e := &r.ev
-	e.x, e.g, e.jac = x, g, jac
-	clear(e.gfix)
-	for _, n := range r.nodes {
-		if n.slot < 0 || n.pilot {
-			continue
-		}
-		k := leak + r.step.restK[n.slot]
-		g[n.slot] += leak*x[n.slot] + r.step.restK[n.slot]*(x[n.slot]-r.step.rest[n.slot])
-		jac[int(n.slot)*e.n+int(n.slot)] += k
-	}
-	for i := range r.shafts {
-		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
-		if s := &r.shafts[i]; s.free && len(s.way) == 0 {
-			e.add(s.sigma, -e.val(s.speed))
-			e.d(s.sigma, s.speed, -1)
-		}
-	}
-	for _, m := range r.models {
-		m.eval(e)
-	}
 }
 
 func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificate, error) {
@@ -193,7 +170,10 @@ func (r *run) solve(k int, share float64, x, good []float64, warm bool) balance.
 	if !warm {
 		r.cold(0, x)
 	}
+	r.solver.Foretell = r.moved() && warm && r.step.t > r.solved
+	r.solved = r.step.t
 	res := r.solver.Solve(r, x, len(coldStarts), r.cold)
+	r.solver.Foretell = false
 	if !res.Solved() {
 		res = r.approach(k, share, x, good)
 	}
@@ -326,6 +306,9 @@ func (r *run) certify(k int, res balance.Result) {
 	if res.Rung > balance.Warm && k > 0 {
 		c.Fallbacks++
 	}
+	if res.Solved() && res.Norm*r.scales.q <= c.Worst && res.Norm*r.topForce <= c.Force { // no row is worse than all together
+		return
+	}
 	for i := range r.rows {
 		left := math.Abs(r.solver.Residual(i))
 		switch r.rows[i].kind {
@@ -334,13 +317,7 @@ func (r *run) certify(k int, res balance.Result) {
 				c.Worst, c.WorstAt = q, r.rows[i].where
 			}
 		case forceRow:
-			f := left * r.scales.p
-			if a := r.rows[i].axis; a >= 0 {
-				f *= r.volumes[a]
-			} else {
-				f *= r.scales.q / 157
-			}
-			c.Force = math.Max(c.Force, f)
+			c.Force = math.Max(c.Force, left*r.forceUnit(&r.rows[i]))
 		}
 	}
 	if res.Solved() {
@@ -351,6 +328,14 @@ func (r *run) certify(k int, res balance.Result) {
 		w := res.Worst
 		c.Unsolved = append(c.Unsolved, Unsolved{T: r.step.t, Where: r.rows[w].where, Residual: r.residual(w), Tried: balance.Tried()})
 	}
+}
+
+// forceUnit is what one unit of a force row stands for [N].
+func (r *run) forceUnit(row *rowName) float64 {
+	if row.axis >= 0 {
+		return r.scales.p * r.volumes[row.axis]
+	}
+	return r.scales.p * r.scales.q / 157
 }
 
 // residual writes what is left of a row in words.
@@ -375,29 +360,21 @@ func (r *run) bookAll() {
 	for _, m := range r.models {
 		m.book(b)
 	}
-	for _, m := range r.models {
-		if g, ok := m.(*gearboxModel); ok {
-			g.bookTorque(b)
-		}
+	for _, g := range r.gears {
+		g.bookTorque(b)
 	}
-	for _, m := range r.models {
-		if e, ok := m.(shaftBooker); ok {
-			e.bookShaft(b)
-		}
+	for _, e := range r.onShafts {
+		e.bookShaft(b)
 	}
-	for _, m := range r.models {
-		if c, ok := m.(*converterModel); ok {
-			c.bookSupply(b)
-		}
+	for _, c := range r.converters {
+		c.bookSupply(b)
 	}
 	for _, p := range r.portP {
 		b.sig[p.signal] = b.pa(p.node)
 	}
 	copy(b.next, r.state.slow)
-	for _, m := range r.models {
-		if s, ok := m.(slowModel); ok {
-			s.advance(b)
-		}
+	for _, s := range r.slowly {
+		s.advance(b)
 	}
 }
 

@@ -39,7 +39,7 @@ func TestEditUndoRedoSave(t *testing.T) {
 	path := b.openPress(t)
 	old := readFile(t, path)
 	texts := []string{old}
-	for _, set := range [][2]string{{"As found/RV1.crack", "231 bar"}, {"As found/RV1.set.origin", "assumed"}, {"As found/note", "Käufer: µ, \"x\""}, {"oil.temperature", "51 C"}} {
+	for _, set := range [][2]string{{"As found/RV1.crack", "231 bar"}, {"As found/RV1.crack.origin", "assumed"}, {"As found/note", "Käufer: µ, \"x\""}, {"oil.temperature", "51 C"}} {
 		revision := b.Revision()
 		check(t, b.Set(set[0], set[1]))
 		if b.Revision() != revision+1 || !b.Dirty() || b.Title() != "press.yaml*" {
@@ -161,12 +161,12 @@ func TestFileIsASnapshot(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	b.openPress(t)
 	f := b.File()
-	text, set := string(f.Bytes()), f.Circuit("As found").Block("RV1").Values["set"].Text
+	text, set := string(f.Bytes()), f.Circuit("As found").Block("RV1").Values["crack"].Text
 	check(t, b.Set("As found/RV1.crack", "231 bar"))
-	if string(f.Bytes()) != text || f.Circuit("As found").Block("RV1").Values["set"].Text != set {
+	if string(f.Bytes()) != text || f.Circuit("As found").Block("RV1").Values["crack"].Text != set {
 		t.Error("an edit changed a file that was handed out")
 	}
-	if got := b.File().Circuit("As found").Block("RV1").Values["set"].Text; got != "231 bar" {
+	if got := b.File().Circuit("As found").Block("RV1").Values["crack"].Text; got != "231 bar" {
 		t.Errorf("set to %s", got)
 	}
 }
@@ -190,7 +190,7 @@ func TestMerging(t *testing.T) {
 		}
 	}
 	drag := func(x float64) { t.Helper(); check(t, b.Move("As found", map[string][2]float64{"RV1": {x, 34}})) }
-	step := func(bar int) { t.Helper(); check(t, b.Step("As found/RV1.crack", fmt.Sprintf("%d bar", bar))) }
+	step := func(bar int) { t.Helper(); check(t, b.Step("As found/RV2.crack", fmt.Sprintf("%d bar", bar))) }
 
 	for x := range 10 {
 		drag(float64(x))
@@ -208,12 +208,12 @@ func TestMerging(t *testing.T) {
 	step(232)
 	b.clock.pass(1001 * time.Millisecond)
 	step(233)
-	undone("Change RV1: set to (As found)", "Change RV1: set to (As found)")
+	undone("Change RV2: cracks at (As found)", "Change RV2: cracks at (As found)")
 
 	step(231)
 	drag(1) // something else between
 	step(232)
-	undone("Change RV1: set to (As found)", "Move RV1", "Change RV1: set to (As found)")
+	undone("Change RV2: cracks at (As found)", "Move RV1", "Change RV2: cracks at (As found)")
 
 	step(231)
 	check(t, b.Save()) // saved between: that state can be reached
@@ -222,36 +222,36 @@ func TestMerging(t *testing.T) {
 	if b.Dirty() {
 		t.Error("undo went past what was saved")
 	}
-	undone("Change RV1: set to (As found)")
+	undone("Change RV2: cracks at (As found)")
 
 	step(231)
-	step(230) // back: nothing to undo
+	step(260) // back: nothing to undo
 	undone()
 	drag(3)
-	check(t, b.Set("As found/RV1.crack", "231 bar"))
-	check(t, b.Set("As found/RV1.crack", "232 bar")) // Set does not merge
-	undone("Change RV1: set to (As found)", "Change RV1: set to (As found)", "Move RV1")
+	check(t, b.Set("As found/RV2.crack", "231 bar"))
+	check(t, b.Set("As found/RV2.crack", "232 bar")) // Set does not merge
+	undone("Change RV2: cracks at (As found)", "Change RV2: cracks at (As found)", "Move RV1")
 }
 
 func TestNames(t *testing.T) {
 	b := newBench(t, quick, Options{})
 	b.openPress(t)
 	for target, want := range map[string]string{
-		"RV1.set":                  "Change RV1: set to",
-		"As found/RV1.set.origin":  "Change RV1: set to, origin (As found)",
-		"RV1.turn":                 "Turn RV1",
-		"As found/RV1.mirror":      "Mirror RV1 (As found)",
-		"oil.viscosity_index":      "Change oil viscosity index",
-		"As found/pump_at_rest":    "Change pump at rest (As found)",
-		"X9.crack":                 "Change X9 crack",
-		"no such circuit/RV1.set":  "Change RV1 set (no such circuit)",
-		"RV1":                      "Change RV1",
-		"":                         "Change ",
-		"site.name":                "Change site name",
-		"energy.price.low":         "Change energy price low",
-		"RV1.nothing":              "Change RV1: nothing",
-		"As found/RV2.crack":       "Change RV2: cracks at (As found)",
-		"As found/C1.rating.value": "Change C1: " + lowerFirst(circuit.KindNamed("cylinder").Param("rating").Title) + ", value (As found)",
+		"RV1.crack":                 "Change RV1: cracks at",
+		"As found/RV1.crack.origin": "Change RV1: cracks at, origin (As found)",
+		"RV1.turn":                  "Turn RV1",
+		"As found/RV1.mirror":       "Mirror RV1 (As found)",
+		"oil.viscosity_index":       "Change oil viscosity index",
+		"As found/pump_at_rest":     "Change pump at rest (As found)",
+		"X9.crack":                  "Change X9 crack",
+		"no such circuit/RV1.crack": "Change RV1 crack (no such circuit)",
+		"RV1":                       "Change RV1",
+		"":                          "Change ",
+		"site.name":                 "Change site name",
+		"energy.price.low":          "Change energy price low",
+		"RV1.nothing":               "Change RV1: nothing",
+		"As found/RV2.crack":        "Change RV2: cracks at (As found)",
+		"As found/C1.rating.value":  "Change C1: " + lowerFirst(circuit.KindNamed("cylinder").Param("rating").Title) + ", value (As found)",
 	} {
 		if got := setName(b.File(), target); got != want {
 			t.Errorf("%s: %q, want %q", target, got, want)
@@ -263,7 +263,7 @@ func TestNames(t *testing.T) {
 		t.Errorf("undo name %q", got)
 	}
 	b.Undo()
-	if b.UndoName() != "Change RV1: set to (As found)" || b.RedoName() != "Change ram.load of baling, row 6" {
+	if b.UndoName() != "Change RV1: cracks at (As found)" || b.RedoName() != "Change ram.load of baling, row 6" {
 		t.Errorf("undo %q, redo %q", b.UndoName(), b.RedoName())
 	}
 	check(t, b.Set("As found/RV1.crack", "232 bar"))

@@ -230,7 +230,7 @@ func TestFollowsEdits(t *testing.T) {
 		t.Fatal(err)
 	}
 	f.settle()
-	if s.calc.value.Text == before || !strings.Contains(s.calc.title.Text, "RV1: relief spill") || !strings.Contains(s.calc.numbers.Text, "ps = 200 bar") {
+	if s.calc.value.Text == before || !strings.Contains(s.calc.title.Text, "RV1: relief spill") || !strings.Contains(s.calc.numbers.Text, "pc = 200 bar") {
 		t.Errorf("after the edit: %q", s.calc.DumpText())
 	}
 }

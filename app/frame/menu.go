@@ -3,6 +3,7 @@ package frame
 import (
 	"fmt"
 	"path/filepath"
+	"strings"
 	"unicode"
 	"unicode/utf8"
 
@@ -103,7 +104,8 @@ func sampleTitle(name string) string {
 	case "quayside-winch.yaml":
 		return "Quayside winch: valve and counterbalance, against a closed circuit"
 	}
-	return name
+	name = strings.ReplaceAll(strings.TrimSuffix(name, filepath.Ext(name)), "-", " ")
+	return strings.ToUpper(name[:1]) + name[1:]
 }
 
 // update brings names, checks and the list of recent files up to date.

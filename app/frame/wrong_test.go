@@ -44,7 +44,9 @@ func TestFaultyFiles(t *testing.T) {
 		}
 		for i := range b.stations {
 			b.show(i)
-			b.capture("wrong")
+			if i < 2 { // the stations that draw what the file has, solved or not
+				b.capture("wrong")
+			}
 		}
 		b.SetClock(1)
 	}

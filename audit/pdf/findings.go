@@ -83,7 +83,7 @@ func (l *layout) certificate() {
 	}
 	t.note = "What a node or an actuator was left with at its worst time step, and what the energy balance lacks, as a share of what came in. " +
 		"A closure above " + units.Format(audit.ClosureLimit, units.Percent, 1) + " is reported as a fault."
-	l.heading(2, "Certificate of the balance", 20)
+	t.title = "Certificate of the balance"
 	l.table(t)
 }
 

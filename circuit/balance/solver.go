@@ -2,10 +2,10 @@ package balance
 
 import "math"
 
-// Problem evaluates G and its Jacobian. Both come zeroed; row i pairs with x[i].
-// J is row-major, n×n. Eval must not allocate and must not keep the slices.
+// Problem evaluates G and, unless j is nil, its slopes. g comes zeroed; row i
+// pairs with x[i]. Eval must not allocate and must not keep what it is given.
 type Problem interface {
-	Eval(x, g, jac []float64)
+	Eval(x, g []float64, j *Slopes)
 }
 
 // Rung names the part of the ladder that solved a step.
@@ -39,7 +39,7 @@ type Result struct {
 	Rung       Rung
 	Iterations int
 	Norm       float64 // scaled 2-norm of the min/max residual
-	Worst      int     // row with the largest residual
+	Worst      int     // row with the largest residual, of a failure
 }
 
 // Solved reports whether x satisfies the conditions.
@@ -60,22 +60,36 @@ type Solver struct {
 	Lo, Hi []float64
 	Weight []float64 // of the distance to a bound against the row, > 0
 	Long   []bool    // unknowns that enter linearly: steps are not limited for them
+	// Foretell lets Solve move the start on by what the last solutions foretell,
+	// where the caller left it at the last one.
+	Foretell bool
 
 	n               int
 	f               *lu
-	g, jac          []float64
+	j               *Slopes
+	g               []float64
 	r, dx, xt, best []float64
 	start, anchor   []float64
 	hist            [5]float64
+	now             point
+	plans           plans
+	past            past
+	far             bool // the step in dx may have to be shortened
+}
+
+// point tells what the workspace holds.
+type point struct {
+	aim    aim
+	norm   float64
+	slopes bool // s.j belongs to this point
 }
 
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
-	s := &Solver{n: n, f: newLU(n), Long: make([]bool, n)}
+	s := &Solver{n: n, f: newLU(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
 	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.g, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor} {
 		*p = make([]float64, n)
 	}
-	s.jac = make([]float64, n*n)
 	for i := 0; i < n; i++ {
 		s.Lo[i], s.Hi[i], s.Weight[i] = math.Inf(-1), math.Inf(1), 1
 	}
@@ -94,37 +108,50 @@ func (s *Solver) Row(i int) float64 { return s.g[i] }
 // (0 = the usual one, 1.. = others); it is called only when the start fails.
 func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, x []float64)) Result {
 	copy(s.start, x)
-	total, bestNorm := 0, math.Inf(1)
+	if s.Foretell && s.past.guess(x, s.Lo, s.Hi) {
+		if ok, it := s.newton(p, x, 5); ok {
+			s.past.keep(x)
+			return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
+		}
+		copy(x, s.start)
+	}
+	ok, it := s.newton(p, x, 15)
+	if ok {
+		s.past.keep(x)
+		return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
+	}
+	s.past.forget()
+	return s.ladder(p, x, levels, cold)
+}
+
+// ladder goes on where Newton from the step before has ended.
+func (s *Solver) ladder(p Problem, x []float64, levels int, cold func(level int, x []float64)) Result {
+	total, bestNorm := 15, math.Inf(1)
 	try := func(rung Rung, run func() (bool, int)) (Result, bool) {
 		ok, it := run()
 		total += it
-		norm, worst := s.norm(p, x, minmax, 0, nil)
+		norm := s.norm(p, x, aim{}, false)
 		if !ok && norm < bestNorm {
 			bestNorm = norm
 			copy(s.best, x[:s.n])
 		}
-		return Result{rung, total, norm, worst}, ok
+		return Result{rung, total, norm, s.worst()}, ok
 	}
+	try(Warm, func() (bool, int) { return false, 0 })
 	type rung struct {
 		r    Rung
 		from int // −1 the step before, else a cold level
 		run  func() (bool, int)
 	}
-	newton := func(it int) func() (bool, int) { return func() (bool, int) { return s.newton(p, x, minmax, it) } }
+	newton := func(it int) func() (bool, int) { return func() (bool, int) { return s.newton(p, x, it) } }
 	smooth := func(it int) func() (bool, int) { return func() (bool, int) { return s.smooth(p, x, it) } }
 	transient := func(d0 float64) func() (bool, int) {
 		return func() (bool, int) { return s.transient(p, x, d0) }
 	}
-	ladder := []rung{
-		{Warm, -1, newton(15)}, {WarmSmooth, -1, smooth(40)}, {Cold, 0, newton(30)}, {ColdSmooth, 0, smooth(60)},
+	for _, l := range []rung{
+		{WarmSmooth, -1, smooth(40)}, {Cold, 0, newton(30)}, {ColdSmooth, 0, smooth(60)},
 		{WarmTransient, -1, transient(1)}, {ColdTransient, 0, transient(10)},
-	}
-	for _, l := range ladder[:1] { // the usual way out, before any closure of the rest is made
-		if res, ok := try(l.r, l.run); ok {
-			return res
-		}
-	}
-	for _, l := range ladder[1:] {
+	} {
 		s.restart(x, l.from, cold)
 		if res, ok := try(l.r, l.run); ok {
 			return res
@@ -139,8 +166,8 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 		}
 	}
 	copy(x, s.best)
-	norm, worst := s.norm(p, x, minmax, 0, nil)
-	return Result{Failed, total, norm, worst}
+	norm := s.norm(p, x, aim{}, false)
+	return Result{Failed, total, norm, s.worst()}
 }
 
 func (s *Solver) restart(x []float64, from int, cold func(int, []float64)) {
@@ -151,210 +178,14 @@ func (s *Solver) restart(x []float64, from int, cold func(int, []float64)) {
 	}
 }
 
-// form turns G, x and the bounds into a residual and the two weights of its
-// Jacobian row: dr_i = wx·dx_i + wg·dG_i.
-type form func(x, g, lo, hi, a float64) (r, wx, wg float64)
-
-// minmax is mid(a(x−h), a(x−l), G): zero exactly at a solution.
-func minmax(x, g, lo, hi, a float64) (r, wx, wg float64) {
-	r, wx, wg = g, 0, 1
-	if d := a * (x - lo); d < r {
-		r, wx, wg = d, a, 0
-	}
-	if d := a * (x - hi); d > r {
-		r, wx, wg = d, a, 0
-	}
-	return
-}
-
-// fb is the Fischer-Burmeister function, nested for two bounds (Billups).
-func fb(x, g, lo, hi, a float64) (r, wx, wg float64) {
-	if lo == hi {
-		return a * (x - lo), a, 0
-	}
-	r, wx, wg = g, 0, 1
-	if !math.IsInf(hi, 1) {
-		q, du, dv := phi(a*(hi-x), -g)
-		r, wx, wg = -q, a*du, dv
-	}
-	if !math.IsInf(lo, -1) {
-		q, du, dv := phi(a*(x-lo), r)
-		r, wx, wg = q, a*du+dv*wx, dv*wg
-	}
-	return
-}
-
-// phi(u,v) = u + v − √(u²+v²), zero where u, v >= 0 and uv = 0, with its derivatives.
-func phi(u, v float64) (q, du, dv float64) {
-	h := math.Hypot(u, v)
-	if h < 1e-300 {
-		return 0, 1 - math.Sqrt2/2, 1 - math.Sqrt2/2
-	}
-	return u + v - h, 1 - u/h, 1 - v/h
-}
-
-// norm evaluates the problem at x, leaves the residual in s.r and, with jac
-// set, the Jacobian of the residual in s.f.a. delta adds delta·(x − anchor) to G.
-func (s *Solver) norm(p Problem, x []float64, form form, delta float64, anchor []float64) (float64, int) {
-	clear(s.g)
-	clear(s.jac)
-	p.Eval(x, s.g, s.jac)
-	sum, worst, big := 0.0, 0, -1.0
-	for i, g := range s.g {
-		if delta > 0 {
-			g += delta * (x[i] - anchor[i])
-		}
-		r, _, _ := form(x[i], g, s.Lo[i], s.Hi[i], s.Weight[i])
-		s.r[i] = r
-		sum += r * r
-		if v := math.Abs(r); v > big || v != v {
-			big, worst = v, i
-		}
-	}
-	if sum != sum {
-		return math.Inf(1), worst
-	}
-	return math.Sqrt(sum), worst
-}
-
-// direction solves for the Newton step of the last evaluated point into s.dx.
-// A nearly singular matrix is met with a proximal shift, growing once.
-func (s *Solver) direction(x []float64, form form, delta float64, anchor []float64) bool {
-	n := s.n
-	for _, shift := range [...]float64{0, 1e-6, 1e-2} {
-		for i := 0; i < n; i++ {
-			g := s.g[i]
-			if delta > 0 {
-				g += delta * (x[i] - anchor[i])
-			}
-			_, wx, wg := form(x[i], g, s.Lo[i], s.Hi[i], s.Weight[i])
-			row, src := s.f.a[i*n:i*n+n], s.jac[i*n:i*n+n]
-			if wg == 0 {
-				clear(row)
-			} else {
-				for j, v := range src {
-					row[j] = wg * v
-				}
-			}
-			row[i] += wx + wg*(delta+shift)
-		}
-		if piv := s.f.factor(); piv >= tinyPivot {
-			s.f.solve(s.r, s.dx)
-			for i := range s.dx {
-				s.dx[i] = -s.dx[i]
-				if s.dx[i] != s.dx[i] {
-					return false
-				}
-			}
-			return true
-		}
-	}
-	return false
-}
-
-// newton iterates on a form of the conditions until the norm is below
-// tolerance. It returns whether it got there and the iterations used.
-func (s *Solver) newton(p Problem, x []float64, form form, maxIt int) (bool, int) {
-	return s.iterate(p, x, form, maxIt, 0, nil, 1)
-}
-
-func (s *Solver) iterate(p Problem, x []float64, form form, maxIt int, delta float64, anchor []float64, tolScale float64) (bool, int) {
-	norm, _ := s.norm(p, x, form, delta, anchor)
-	for i := range s.hist {
-		s.hist[i] = norm
-	}
-	for it := 0; ; it++ {
-		if tol := tolScale * s.tol(x); norm <= tol || (norm < 1e-6 && delta == 0 && s.rounded(x, form, tol)) {
-			return true, it
-		}
-		if it == maxIt || math.IsInf(norm, 1) {
-			return false, it
-		}
-		if !s.direction(x, form, delta, anchor) {
-			return false, it
-		}
-		norm = s.lineSearch(p, x, form, delta, anchor)
-		s.hist[it%len(s.hist)] = norm
-	}
-}
-
-// tol grows with the size of the unknowns, as what rounding leaves of a residual
-// does, but not without end: an unknown that runs away is no solution.
-func (s *Solver) tol(x []float64) float64 {
-	m := 0.0
-	for i, v := range x[:s.n] {
-		if s.Long[i] {
-			continue
-		}
-		if v := math.Abs(v); v > m {
-			m = v
-		}
-	}
-	return Tol * (1 + 0.1*math.Min(m, 1e3))
-}
-
-// rounded reports whether the residual is within tolerance of what rounding of
-// the unknowns can leave in steep rows: rows are weighed by their largest slope,
-// from 10,000 up.
-func (s *Solver) rounded(x []float64, form form, tol float64) bool {
-	sum := 0.0
-	for i, r := range s.r {
-		if _, _, wg := form(x[i], s.g[i], s.Lo[i], s.Hi[i], s.Weight[i]); wg != 0 {
-			steep := 0.0
-			for _, v := range s.jac[i*s.n : i*s.n+s.n] {
-				steep = math.Max(steep, math.Abs(v))
-			}
-			r /= math.Max(1, 1e-4*steep)
-		}
-		sum += r * r
-	}
-	return math.Sqrt(sum) <= tol
-}
-
-// lineSearch moves x along s.dx: a full step, shortened as a whole where it
-// would carry an unknown too far, halved until the norm is below the largest of
-// the last few, else the best of the points tried.
-func (s *Solver) lineSearch(p Problem, x []float64, form form, delta float64, anchor []float64) float64 {
-	ref := s.hist[0]
-	for _, h := range s.hist[1:] {
-		ref = math.Max(ref, h)
-	}
-	t := 1.0
-	for i, d := range s.dx {
-		if lim := maxStep + 2*math.Abs(x[i]); !s.Long[i] && math.Abs(d)*t > lim {
-			t = lim / math.Abs(d)
-		}
-	}
-	bestNorm, bestT := math.Inf(1), t
-	copy(s.xt, x[:s.n])
-	for k := 0; k <= 8; k++ {
-		for i := range s.dx {
-			x[i] = s.xt[i] + t*s.dx[i]
-		}
-		norm, _ := s.norm(p, x, form, delta, anchor)
-		if norm < ref || norm == 0 {
-			return norm
-		}
-		if norm < bestNorm {
-			bestNorm, bestT = norm, t
-		}
-		t /= 2
-	}
-	for i := range s.dx {
-		x[i] = s.xt[i] + bestT*s.dx[i]
-	}
-	norm, _ := s.norm(p, x, form, delta, anchor)
-	return norm
-}
-
 // smooth runs Fischer-Burmeister and then a few min/max steps, which make the
 // bounds exact.
 func (s *Solver) smooth(p Problem, x []float64, maxIt int) (bool, int) {
-	ok, it := s.iterate(p, x, fb, maxIt, 0, nil, 100)
+	ok, it := s.iterate(p, x, aim{smooth: true, loose: 100}, maxIt)
 	if !ok {
 		return false, it
 	}
-	ok, more := s.newton(p, x, minmax, 8)
+	ok, more := s.newton(p, x, 8)
 	return ok, it + more
 }
 
@@ -362,12 +193,12 @@ func (s *Solver) smooth(p Problem, x []float64, maxIt int) (bool, int) {
 // falls, then polishes.
 func (s *Solver) transient(p Problem, x []float64, delta float64) (bool, int) {
 	total := 0
-	old, _ := s.norm(p, x, minmax, 0, nil)
+	old := s.norm(p, x, aim{}, false)
 	for step := 0; step < 120; step++ {
 		copy(s.anchor, x[:s.n])
-		_, it := s.iterate(p, x, fb, 4, delta, s.anchor, 100)
+		_, it := s.iterate(p, x, aim{smooth: true, loose: 100, delta: delta}, 4)
 		total += it
-		now, _ := s.norm(p, x, minmax, 0, nil)
+		now := s.norm(p, x, aim{}, false)
 		if math.IsInf(now, 1) {
 			return false, total
 		}

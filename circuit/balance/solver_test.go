@@ -14,8 +14,11 @@ type problem struct {
 	f func(x, g []float64)
 }
 
-func (p problem) Eval(x, g, jac []float64) {
+func (p problem) Eval(x, g []float64, jac *Slopes) {
 	p.f(x, g)
+	if jac == nil {
+		return
+	}
 	hi, lo := make([]float64, p.n), make([]float64, p.n)
 	for j := 0; j < p.n; j++ {
 		h := 1e-6 * (1 + math.Abs(x[j]))
@@ -26,7 +29,7 @@ func (p problem) Eval(x, g, jac []float64) {
 		p.f(x, lo)
 		x[j] = old
 		for i := 0; i < p.n; i++ {
-			jac[i*p.n+j] = (hi[i] - lo[i]) / (2 * h)
+			jac.Add(i, j, (hi[i]-lo[i])/(2*h))
 		}
 	}
 }

@@ -1,0 +1,195 @@
+package balance
+
+import "math"
+
+// newton iterates on the min/max form until the norm is below tolerance. It
+// returns whether it got there and the iterations used.
+func (s *Solver) newton(p Problem, x []float64, maxIt int) (bool, int) {
+	return s.iterate(p, x, aim{}, maxIt)
+}
+
+func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
+	norm := s.norm(p, x, a, true)
+	for i := range s.hist {
+		s.hist[i] = norm
+	}
+	before, planned, repeated := 0.0, false, false
+	for it := 0; ; it++ {
+		tol := Tol
+		if norm > tol && norm < 1e-6 { // else the size of x cannot decide it
+			tol = s.tol(x)
+		}
+		if a.loose > 0 {
+			tol *= a.loose
+		}
+		if repeated { // what old factors leave tends to lie in one row, and must be far below tolerance
+			if norm <= tol/64 {
+				return true, it
+			}
+		} else if norm <= tol || (norm < 1e-6 && norm > before/16 && a.delta == 0 && s.rounded(p, x, a, tol)) {
+			return true, it
+		}
+		if it == maxIt || math.IsInf(norm, 1) {
+			return false, it
+		}
+		if !s.now.slopes {
+			if left := norm * norm / before; planned && !repeated && 4*left <= tol && s.again(p, x, norm) {
+				norm, before, repeated = s.now.norm, norm, true
+				continue
+			}
+			norm = s.norm(p, x, a, true)
+		}
+		before, repeated = norm, false
+		planned = s.planned(a)
+		if !planned && !s.direction(x, a) {
+			return false, it
+		}
+		norm = s.lineSearch(p, x, a, planned)
+		s.hist[it%len(s.hist)] = norm
+	}
+}
+
+// again takes another step with the factors of the point before, whose slopes
+// are near enough when the last step went far. It leaves x as it is when that
+// does not help.
+func (s *Solver) again(p Problem, x []float64, norm float64) bool {
+	if !s.plans.last.met(s.plans.key) {
+		return false
+	}
+	s.step()
+	copy(s.xt, x[:s.n])
+	for i, d := range s.dx {
+		x[i] += d
+	}
+	if s.norm(p, x, aim{}, false) < norm {
+		return true
+	}
+	copy(x, s.xt)
+	return false
+}
+
+// tol grows with the size of the unknowns, as what rounding leaves of a residual
+// does, but not without end: an unknown that runs away is no solution.
+func (s *Solver) tol(x []float64) float64 {
+	m := 0.0
+	for i, v := range x[:s.n] {
+		if v := math.Abs(v); v > m && !s.Long[i] {
+			m = v
+		}
+	}
+	return Tol * (1 + 0.1*math.Min(m, 1e3))
+}
+
+// rounded reports whether the residual is within tolerance of what rounding of
+// the unknowns can leave in steep rows: rows are weighed by their largest slope,
+// from 10,000 up.
+func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
+	if !s.now.slopes {
+		s.norm(p, x, a, true)
+	}
+	steep := s.xt // free between steps
+	clear(steep)
+	for k, v := range s.j.val[1:] {
+		i := s.j.row[k+1]
+		steep[i] = max(steep[i], math.Abs(v))
+	}
+	sum := 0.0
+	for i, r := range s.r {
+		if _, _, wg := a.row(x[i], s.g[i], s.Lo[i], s.Hi[i], s.Weight[i]); wg != 0 {
+			r /= max(1, 1e-4*steep[i])
+		}
+		sum += r * r
+	}
+	return math.Sqrt(sum) <= tol
+}
+
+// direction solves for the Newton step of the last evaluated point into s.dx.
+// A nearly singular matrix is met with a proximal shift, growing once.
+func (s *Solver) direction(x []float64, a aim) bool {
+	n := s.n
+	for _, shift := range [...]float64{0, 1e-6, 1e-2} {
+		clear(s.f.a)
+		weight := s.xt // free between steps
+		for i := 0; i < n; i++ {
+			g := s.g[i]
+			if a.delta > 0 {
+				g += a.delta * (x[i] - s.anchor[i])
+			}
+			_, wx, wg := a.row(x[i], g, s.Lo[i], s.Hi[i], s.Weight[i])
+			weight[i] = wg
+			s.f.a[i*n+i] = wx + wg*(a.delta+shift)
+		}
+		for k, v := range s.j.val[1:] {
+			if i := int(s.j.row[k+1]); weight[i] != 0 {
+				s.f.a[i*n+int(s.j.col[k+1])] += weight[i] * v
+			}
+		}
+		if piv := s.f.factor(); piv >= tinyPivot {
+			s.f.solve(s.r, s.dx)
+			for i := range s.dx {
+				s.dx[i] = -s.dx[i]
+				if s.dx[i] != s.dx[i] {
+					return false
+				}
+			}
+			return true
+		}
+	}
+	return false
+}
+
+// lineSearch moves x along s.dx: a full step, shortened as a whole where it
+// would carry an unknown too far, halved until the norm is below the largest of
+// the last few, else the best of the points tried.
+func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64 {
+	ref := s.hist[0]
+	for _, h := range s.hist[1:] {
+		ref = max(ref, h)
+	}
+	t := 1.0
+	if !planned || s.far {
+		t = s.reach(x)
+	}
+	copy(s.xt, x[:s.n])
+	bestNorm, bestT := math.Inf(1), t
+	for k := 0; k <= 8; k++ {
+		for i := range s.dx {
+			x[i] = s.xt[i] + t*s.dx[i]
+		}
+		norm := s.norm(p, x, a, false)
+		if norm < ref || norm == 0 {
+			return norm
+		}
+		if planned && k == 0 { // the safer factors first
+			planned = false
+			copy(x, s.xt)
+			s.norm(p, x, a, true)
+			if s.direction(x, a) {
+				copy(s.xt, x[:s.n])
+				t, k = s.reach(x), -1
+				continue
+			}
+		}
+		if norm < bestNorm {
+			bestNorm, bestT = norm, t
+		}
+		t /= 2
+	}
+	for i := range s.dx {
+		x[i] = s.xt[i] + bestT*s.dx[i]
+	}
+	return s.norm(p, x, a, true)
+}
+
+// reach is how much of the step s.dx from x may be taken at most.
+func (s *Solver) reach(x []float64) float64 {
+	t := 1.0
+	for i, d := range s.dx {
+		if d := math.Abs(d); d > maxStep { // most steps are short
+			if lim := maxStep + 2*math.Abs(x[i]); d*t > lim && !s.Long[i] {
+				t = lim / d
+			}
+		}
+	}
+	return t
+}

@@ -1,0 +1,102 @@
+package balance
+
+// plans keeps the plans made for the sets of active bounds that were met.
+type plans struct {
+	key   []uint64 // of the last residual
+	last  *plan
+	of    map[uint64]*plan
+	work  []float64
+	maker *planner
+	spare int // more will be made
+}
+
+// mostPlans bounds the memory of plans; beyond it the dense factors serve.
+const mostPlans = 400
+
+func newPlans(n int) plans {
+	return plans{key: make([]uint64, (n+63)/64), of: map[uint64]*plan{}}
+}
+
+// get returns the plan for the present key, or nil where there is none.
+func (ps *plans) get(j *Slopes) *plan {
+	if p := ps.last; p != nil && p.fits(ps.key, j) {
+		return p
+	}
+	h := uint64(14695981039346656037)
+	for _, w := range ps.key {
+		h = (h ^ w) * 1099511628211
+		h ^= h >> 29
+	}
+	p := ps.of[h]
+	if p == nil || !p.fits(ps.key, j) {
+		if p == nil && len(ps.of) >= mostPlans {
+			return nil
+		}
+		if p == nil || !p.met(ps.key) { // many are met but once: a plan is for those that come back
+			ps.of[h] = &plan{key: append([]uint64(nil), ps.key...)}
+			return nil
+		}
+		if ps.maker == nil {
+			ps.maker = newPlanner(j.n)
+		}
+		p = ps.maker.make(j, ps.key)
+		ps.of[h] = p
+		if len(ps.work) < p.size {
+			ps.work = make([]float64, p.size)
+		}
+	}
+	ps.last = p
+	return p
+}
+
+// fits reports whether p was made for this key and pattern, and works.
+func (p *plan) fits(key []uint64, j *Slopes) bool {
+	return p.entries == len(j.val) && p.bad <= pivotBad && p.met(key)
+}
+
+// met reports whether p is of this key.
+func (p *plan) met(key []uint64) bool {
+	for i, w := range p.key {
+		if w != key[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// planned solves for the Newton step with a plan, if there is one and it works.
+func (s *Solver) planned(a aim) bool {
+	if a.smooth || a.delta > 0 {
+		return false
+	}
+	p := s.plans.get(s.j)
+	if p == nil || !p.sparse {
+		return false
+	}
+	if !p.run(s.j.val, s.plans.work) {
+		p.bad++
+		return false
+	}
+	s.step()
+	sum := 0.0
+	for _, d := range s.dx {
+		sum += d * d
+	}
+	s.far = sum > maxStep*maxStep
+	return sum == sum
+}
+
+// step solves with the factors of the last plan for the present residual.
+func (s *Solver) step() {
+	p := s.plans.last
+	moved := false
+	b := s.xt // free between steps
+	for i, r := range s.r {
+		b[i] = r
+		if bit(p.key, i) {
+			s.dx[i] = -r / s.Weight[i]
+			moved = moved || r != 0
+		}
+	}
+	p.solve(s.j.val, s.plans.work, b, s.dx, moved)
+}
