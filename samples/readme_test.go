@@ -23,6 +23,8 @@ var quoted = map[string]func(*audit.CircuitRun) float64{
 	"over relief valves, %":                             lossOf("relief"),
 	"in valves that throttle or brake, %":               lossOf("metering", "unloaded circulation", "braking of the load"),
 	"in the counterbalance valve, %":                    lossOf("braking of the load"),
+	"in compensators, %":                                lossOf("compensator"),
+	"in the brake resistor, %":                          lossOf("brake resistor"),
 	"in pumps and hydraulic motors, %":                  machines,
 	"in electric motor, converter and gearbox, %":       lossOf("electric motor", "converter", "brake resistor", "gearbox"),
 	"mean power over a cycle of work, kW":               func(c *audit.CircuitRun) float64 { return mean(c, 0) / 1e3 },
@@ -178,13 +180,15 @@ func TestReadmeClaims(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	for name, above := range map[string]bool{"baling-press.yaml": true, "quayside-winch.yaml": false} {
+	for name, above := range map[string]bool{"baling-press.yaml": true, "quayside-winch.yaml": false, "handling-machine.yaml": false} {
 		c := all[name].Comparisons[0]
 		if c.Published.Outside != above || !c.Published.Known {
 			t.Errorf("%s: %s", name, c.Published.Text)
 		}
 	}
 	press, winch := all["baling-press.yaml"].Circuits[0], all["quayside-winch.yaml"].Circuits[0]
+	handling := all["handling-machine.yaml"]
+	found, proposed := handling.Circuits[0], handling.Circuits[1]
 	valves, still := "in valves that throttle or brake, %", "drawn while nothing moves, %"
 	for _, claim := range []struct {
 		words     string
@@ -194,11 +198,25 @@ func TestReadmeClaims(t *testing.T) {
 		{"a fifth while nothing moves", quoted[still](press), 18, 22},
 		{"half in valves", quoted[valves](winch), 48, 52},
 		{"more than a third in pump and motor", machines(winch), 100. / 3, 40},
+		{"nearly half in compensators, margin and counterbalance valve", quoted["in compensators, %"](found) + quoted[valves](found), 45, 50},
+		{"the resistor is the largest loss", quoted["in the brake resistor, %"](proposed), largestOther(proposed, "brake resistor"), 100},
+		{"more than half is saved", compared["saved, % of the as found"](handling.Comparisons[0]), 50, 60},
 	} {
 		if !(claim.x >= claim.lo && claim.x <= claim.hi) {
 			t.Errorf("%s: %.1f %%", claim.words, claim.x)
 		}
 	}
+}
+
+// largestOther returns the largest loss of another kind, as a share.
+func largestOther(c *audit.CircuitRun, kind string) float64 {
+	most := 0.0
+	for _, l := range c.Year.Losses {
+		if l.Kind != kind {
+			most = math.Max(most, share(c, l.Energy.Total()))
+		}
+	}
+	return most
 }
 
 func readme(t *testing.T) []string {

@@ -133,6 +133,9 @@ func TestWork(t *testing.T) {
 				pos, neg, net := work(d.Time, speed, load)
 				for _, c := range s.Circuits {
 					for _, w := range c.Duties[i].Balance.Work {
+						if w.Axis != a.Name {
+							continue
+						}
 						near(t, c.Circuit.Name+", work", w.Positive.Total(), pos, 0.005)
 						near(t, c.Circuit.Name+", work of the load", w.Negative.Total(), neg, 0.005)
 					}

@@ -45,7 +45,7 @@ func (h *byHand) v(block, key string) float64 {
 
 func (h *byHand) speed() float64 { return h.v("M1", "speed") }
 
-func (h *byHand) disp(pump string) float64 { return h.v(pump, "displacement") / (2 * math.Pi) }
+func (h *byHand) disp(pump string) float64 { return h.v(pump, "displacement") } // m³/rad
 
 // rub is the friction power of a machine at the speed of the motor [W].
 func (h *byHand) rub(pump string, p float64) float64 {
@@ -143,10 +143,12 @@ var idleShaft = map[string]func(h *byHand) float64{
 	},
 	"flow-divider.yaml": func(h *byHand) float64 { // half through each tandem centre, the divider's friction before them
 		return h.fixed("P1", func(q float64) float64 {
-			D := h.disp("FD1")
-			w := q / D
-			p := square(q/2, h.v("V1", "flow_centre"), h.v("V1", "nominal_drop")) + h.filter(q)
-			return p + (h.v("FD1", "viscous")*D*h.mu*w+h.v("FD1", "drag"))/(D*(1-h.v("FD1", "friction")))
+			D, dp := h.disp("FD1"), 0.0
+			for range 50 {
+				w := (q - h.slip("FD1", dp)) / D
+				dp = (h.v("FD1", "viscous")*D*h.mu*w + h.v("FD1", "drag")) / (D * (1 - h.v("FD1", "friction")))
+			}
+			return dp + square(q/2, h.v("V1", "flow_centre"), h.v("V1", "nominal_drop")) + h.filter(q)
 		})
 	},
 	// The charge pump over its relief valve; the loop stands at its pressure less the
