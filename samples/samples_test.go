@@ -226,25 +226,29 @@ func TestStandByOfTheWinch(t *testing.T) {
 
 // Every block has a place on whole modules, away from its neighbours.
 func TestPlaces(t *testing.T) {
-	each(t, func(t *testing.T, s *audit.Solution) {
-		for _, c := range s.Circuits {
-			var at [][2]float64
-			for _, b := range c.Circuit.Blocks {
-				if b.At == nil {
-					t.Errorf("%s: %s has no place", c.Circuit.Name, b.ID)
-					continue
-				}
-				x, y := b.At[0], b.At[1]
-				if x != math.Trunc(x) || y != math.Trunc(y) || x < 0 || y < 0 || x > 72 || y > 60 {
-					t.Errorf("%s: %s stands at %v", c.Circuit.Name, b.ID, *b.At)
-				}
-				for _, o := range at {
-					if math.Max(math.Abs(o[0]-x), math.Abs(o[1]-y)) < 8 {
-						t.Errorf("%s: %s stands on a neighbour at %v", c.Circuit.Name, b.ID, o)
-					}
-				}
-				at = append(at, *b.At)
+	each(t, func(t *testing.T, s *audit.Solution) { places(t, s) })
+	eachStarter(t, func(t *testing.T, _ Starter, s *audit.Solution) { places(t, s) })
+}
+
+func places(t *testing.T, s *audit.Solution) {
+	t.Helper()
+	for _, c := range s.Circuits {
+		var at [][2]float64
+		for _, b := range c.Circuit.Blocks {
+			if b.At == nil {
+				t.Errorf("%s: %s has no place", c.Circuit.Name, b.ID)
+				continue
 			}
+			x, y := b.At[0], b.At[1]
+			if x != math.Trunc(x) || y != math.Trunc(y) || x < 0 || y < 0 || x > 72 || y > 64 {
+				t.Errorf("%s: %s stands at %v", c.Circuit.Name, b.ID, *b.At)
+			}
+			for _, o := range at {
+				if math.Max(math.Abs(o[0]-x), math.Abs(o[1]-y)) < 8 {
+					t.Errorf("%s: %s stands on a neighbour at %v", c.Circuit.Name, b.ID, o)
+				}
+			}
+			at = append(at, *b.At)
 		}
-	})
+	}
 }

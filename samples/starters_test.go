@@ -61,6 +61,9 @@ func TestStarterFiles(t *testing.T) {
 		if want := st.Title + " (starter, invented data)"; f.Title != want {
 			t.Errorf("%s is titled %q, want %q", st.Name, f.Title, want)
 		}
+		if want := "Invented data. " + st.Text; f.Site.Note != want {
+			t.Errorf("%s says %q, want %q", st.Name, f.Site.Note, want)
+		}
 	}
 	if _, err := ReadStarter("none.yaml"); err == nil || !strings.Contains(err.Error(), Starters()[0].Name) {
 		t.Errorf("unknown name: %v, want the known names", err)

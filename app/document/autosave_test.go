@@ -69,9 +69,10 @@ func TestCloseKeepsUnsaved(t *testing.T) {
 
 func TestRecover(t *testing.T) {
 	for name, open := range map[string]func(b *bench) error{
-		"press.yaml":            func(b *bench) error { _, err := b.Open(filepath.Join(b.dir, "press.yaml")); return err },
-		"baling-press (sample)": func(b *bench) error { return b.OpenSample(press) },
-		"untitled":              func(b *bench) error { return b.OpenEmpty() },
+		"press.yaml":                 func(b *bench) error { _, err := b.Open(filepath.Join(b.dir, "press.yaml")); return err },
+		"baling-press (sample)":      func(b *bench) error { return b.OpenSample(press) },
+		"load-sensing-two (starter)": func(b *bench) error { return b.OpenStarter("load-sensing-two.yaml") },
+		"untitled":                   func(b *bench) error { return b.OpenEmpty() },
 	} {
 		t.Run(name, func(t *testing.T) {
 			b := newBench(t, quick, Options{})

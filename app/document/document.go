@@ -68,10 +68,11 @@ type state struct {
 	origin
 }
 
-// origin says where an audit comes from: a file, a sample, or nowhere.
+// origin says where an audit comes from: a file, a sample, a starter, or nowhere.
 type origin struct {
-	Path   string `json:"path,omitempty"`
-	Sample string `json:"sample,omitempty"`
+	Path    string `json:"path,omitempty"`
+	Sample  string `json:"sample,omitempty"`
+	Starter string `json:"starter,omitempty"`
 }
 
 var errClosed = errors.New("the document is closed")
@@ -176,6 +177,8 @@ func (o origin) name() string {
 		return filepath.Base(o.Path)
 	case o.Sample != "":
 		return strings.TrimSuffix(o.Sample, fileExt) + " (sample)"
+	case o.Starter != "":
+		return strings.TrimSuffix(o.Starter, fileExt) + " (starter)"
 	}
 	return "untitled"
 }

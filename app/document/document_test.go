@@ -12,6 +12,7 @@ import (
 
 	"barlitre/audit"
 	"barlitre/circuit"
+	"barlitre/samples"
 )
 
 func TestNewIsEmptyAndClean(t *testing.T) {
@@ -310,6 +311,15 @@ func TestSampleIsUntitled(t *testing.T) {
 	}
 	if err := b.Save(); !errors.Is(err, ErrNoPath) {
 		t.Errorf("saved: %v", err)
+	}
+	for _, s := range samples.Starters() {
+		check(t, b.OpenStarter(s.Name))
+		if want := strings.TrimSuffix(s.Name, ".yaml") + " (starter)"; b.Path() != "" || b.Dirty() || b.Title() != want {
+			t.Errorf("path %q, title %q, want %q", b.Path(), b.Title(), want)
+		}
+	}
+	if b.OpenStarter("none.yaml") == nil {
+		t.Error("a starter that is not there")
 	}
 	check(t, b.OpenEmpty())
 	if b.Title() != "untitled" || string(b.File().Bytes()) != emptyText {

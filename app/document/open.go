@@ -75,6 +75,20 @@ func (d *Document) OpenSample(name string) error {
 	return d.begin(f, o)
 }
 
+// OpenStarter opens a copy of a shipped starter, as OpenSample does a sample.
+func (d *Document) OpenStarter(name string) error {
+	data, err := samples.ReadStarter(name)
+	if err != nil {
+		return err
+	}
+	o := origin{Starter: name}
+	f, found := audit.Parse(data, o.opener(), "")
+	if f == nil {
+		return notRead(name, found)
+	}
+	return d.begin(f, o)
+}
+
 // OpenEmpty begins an audit with nothing drawn. The present audit goes, as with Open.
 func (d *Document) OpenEmpty() error {
 	f, _ := audit.Parse([]byte(emptyText), nil, "")
@@ -132,6 +146,8 @@ func (o origin) text() ([]byte, error) {
 		return os.ReadFile(o.Path)
 	case o.Sample != "":
 		return samples.Read(o.Sample)
+	case o.Starter != "":
+		return samples.ReadStarter(o.Starter)
 	}
 	return []byte(emptyText), nil
 }

@@ -155,7 +155,7 @@ func (s *Station) lacking() string {
 	case s.shown == nil:
 		return "Nothing is solved yet. As soon as a circuit is balanced over a duty, its energy stands here."
 	case len(s.shown.Circuits) == 0:
-		return "There is no circuit yet. Open an audit, or take File > New from sample."
+		return "There is no circuit yet. Open an audit, or take one from File > New."
 	case len(s.shown.File.Duties) == 0:
 		return "There is no duty yet, so no energy flows. Give what the axes must do in the Duty station."
 	}

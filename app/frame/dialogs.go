@@ -16,6 +16,7 @@ import (
 	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
+	"barlitre/samples"
 )
 
 func (f *Frame) tellFailure(text string) {
@@ -74,6 +75,15 @@ func (f *Frame) openSample(name string) {
 	if err := f.doc.OpenSample(name); err != nil {
 		f.Fail(err)
 	}
+}
+
+// openStarter opens a starter and says what to do with it.
+func (f *Frame) openStarter(s samples.Starter) {
+	if err := f.doc.OpenStarter(s.Name); err != nil {
+		f.Fail(err)
+		return
+	}
+	f.Say(s.Title + ", invented data. The note in the report says what gives its losses away; click a block to put your own numbers in.")
 }
 
 func (f *Frame) askOpen() {

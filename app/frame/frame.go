@@ -361,7 +361,7 @@ func (f *Frame) Open(path string) {
 		f.open(path)
 	} else {
 		f.openSample(firstSample)
-		f.Say("Sample, invented data. File > New from sample and File > Open start an audit of your own; click a block to change it, and the verdict follows.")
+		f.Say("Sample, invented data. File > New and File > Open start an audit of your own; click a block to change it, and the verdict follows.")
 	}
 	f.offerRecovery()
 }

@@ -47,8 +47,12 @@ func (f *Frame) buildMenu() {
 		return m
 	}
 	m := &f.menu
-	start := fyne.NewMenuItem("New from sample", nil)
+	start := fyne.NewMenuItem("New", nil)
 	start.ChildMenu = fyne.NewMenu("")
+	for _, s := range samples.Starters() {
+		start.ChildMenu.Items = append(start.ChildMenu.Items, item(s.Title, nil, func() { f.leave(func() { f.openStarter(s) }) }))
+	}
+	start.ChildMenu.Items = append(start.ChildMenu.Items, fyne.NewMenuItemSeparator())
 	for _, name := range samples.Names() {
 		start.ChildMenu.Items = append(start.ChildMenu.Items, item(sampleTitle(name), nil, func() { f.leave(func() { f.openSample(name) }) }))
 	}
@@ -101,6 +105,8 @@ func sampleTitle(name string) string {
 	switch name {
 	case "baling-press.yaml":
 		return "Scrap-baling press: throttled, against a pump-controlled ram"
+	case "handling-machine.yaml":
+		return "Handling machine: load sensing, against a pump for each motion"
 	case "quayside-winch.yaml":
 		return "Quayside winch: valve and counterbalance, against a closed circuit"
 	}

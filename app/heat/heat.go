@@ -142,7 +142,7 @@ func (h *Heat) figures() {
 // emptyText says what belongs here and how to get it.
 func emptyText(r *audit.Report) string {
 	if r == nil {
-		return "The heat of each circuit stands here as soon as there is a result. Open an audit, or take File > New from sample; it is then solved by itself."
+		return "The heat of each circuit stands here as soon as there is a result. Open an audit, or take one from File > New; it is then solved by itself."
 	}
 	return "No circuit could be solved, so there is no heat to show. Circuit lists under its findings what is missing; a click on one leads to it."
 }

@@ -90,7 +90,7 @@ func (e *editor) drawEmpty(p pen.Pen, w, h float64) {
 	pal, k := e.s.ctx.Palette(), float64(widgets.Scale())
 	lines := []string{"A proposal stands here, beside the circuit as found.", "Add a circuit with role: proposal to the audit file."}
 	if e.index == 0 {
-		lines = []string{"No circuit in this audit yet.", "File > New from sample has two to begin with;", "File > Open takes an audit file."}
+		lines = []string{"No circuit in this audit yet.", "File > New has one of each kind to begin with;", "File > Open takes an audit file."}
 	}
 	y := h/2 - 20*k
 	for i, l := range lines {

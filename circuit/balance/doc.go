@@ -15,6 +15,11 @@
 // pseudo-transient continuation (implicit Euler on x' = −G); each from the last
 // solution and from cold starts. Which rung solved a step is reported.
 //
+// Speed: the elimination is worked out once for each set of active bounds and
+// replayed (plan.go); a last step is taken with the factors at hand; the start is
+// foretold from the solutions before (past.go). Where any of it does not serve, the
+// dense factors do.
+//
 // Sources: Facchinei and Pang, Finite-Dimensional Variational Inequalities and
 // Complementarity Problems, Springer 2003, ch. 8-9; Billups, Algorithms for
 // complementarity problems and generalized equations, thesis, Wisconsin 1995

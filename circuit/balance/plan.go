@@ -1,6 +1,9 @@
 package balance
 
-import "math"
+import (
+	"math"
+	"math/bits"
+)
 
 // plan is an elimination worked out once for one set of active bounds and then
 // replayed on the numbers: unknowns that rest on a bound are known and drop out,
@@ -28,24 +31,49 @@ const (
 	pivotBad   = 5    // a plan that failed so often is made anew
 )
 
-// planner holds what making a plan needs.
+// planner holds what making a plan needs. Sets of rows and columns are bits.
 type planner struct {
-	n     int
-	a     []float64 // n×n values, eliminated as the order is found
-	slot  []int32   // n×n places in work, −1 = structurally zero
-	scale []float64
-	inRow []int32 // entries left
-	inCol []int32
-	rows  []int32 // left to do
-	cols  []int32
-	at    []int32
+	n, words int
+	a        []float64 // n×n values, eliminated as the order is found
+	slot     []int32   // n×n places in work, where the bits say there is one
+	inRow    [][]uint64
+	inCol    [][]uint64
+	scale    []float64
+	rows     []int // left to do
+	cols     []int
 }
 
 func newPlanner(n int) *planner {
-	return &planner{n: n, a: make([]float64, n*n), slot: make([]int32, n*n), scale: make([]float64, n), inRow: make([]int32, n), inCol: make([]int32, n)}
+	w := &planner{n: n, words: (n + 63) / 64, a: make([]float64, n*n), slot: make([]int32, n*n), scale: make([]float64, n)}
+	sets := make([]uint64, 2*n*w.words)
+	for i := 0; i < n; i++ {
+		k := 2 * i * w.words
+		w.inRow, w.inCol = append(w.inRow, sets[k:k+w.words]), append(w.inCol, sets[k+w.words:k+2*w.words])
+	}
+	return w
 }
 
-func bit(key []uint64, i int) bool { return key[i>>6]>>(uint(i)&63)&1 != 0 }
+func bit(set []uint64, i int) bool { return set[i>>6]>>(uint(i)&63)&1 != 0 }
+
+func put(set []uint64, i int) { set[i>>6] |= 1 << (uint(i) & 63) }
+
+func drop(set []uint64, i int) { set[i>>6] &^= 1 << (uint(i) & 63) }
+
+func size(set []uint64) (n int) {
+	for _, w := range set {
+		n += bits.OnesCount64(w)
+	}
+	return n
+}
+
+// each calls f for the members of a set, in order.
+func each(set []uint64, f func(i int)) {
+	for k, w := range set {
+		for ; w != 0; w &= w - 1 {
+			f(k<<6 + bits.TrailingZeros64(w))
+		}
+	}
+}
 
 // make works out a plan for the slopes j as they are now.
 func (w *planner) make(j *Slopes, key []uint64) *plan {
@@ -65,17 +93,16 @@ func (w *planner) make(j *Slopes, key []uint64) *plan {
 
 // load lays the rows that are not on a bound out in w.
 func (w *planner) load(j *Slopes, p *plan) {
-	n := w.n
 	w.rows, w.cols = w.rows[:0], w.cols[:0]
-	for i := 0; i < n; i++ {
-		w.scale[i], w.inRow[i], w.inCol[i] = 0, 0, 0
+	for i := 0; i < w.n; i++ {
+		w.scale[i] = 0
+		clear(w.inRow[i])
+		clear(w.inCol[i])
 		if !bit(p.key, i) {
-			w.rows, w.cols = append(w.rows, int32(i)), append(w.cols, int32(i))
+			w.rows, w.cols = append(w.rows, i), append(w.cols, i)
 		}
 	}
-	for i := range w.slot {
-		w.slot[i], w.a[i] = -1, 0
-	}
+	p.src = make([]int32, 0, len(j.val))
 	for k := 1; k < len(j.val); k++ {
 		r, c := int(j.row[k]), int(j.col[k])
 		switch {
@@ -83,11 +110,11 @@ func (w *planner) load(j *Slopes, p *plan) {
 		case bit(p.key, c):
 			p.tied = append(p.tied, int32(r), int32(k), int32(c))
 		default:
-			w.slot[r*n+c], w.a[r*n+c] = int32(len(p.src)), j.val[k]
+			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(len(p.src)), j.val[k]
+			put(w.inRow[r], c)
+			put(w.inCol[c], r)
 			p.src = append(p.src, int32(k))
-			w.inRow[r]++
-			w.inCol[c]++
-			w.scale[r] = math.Max(w.scale[r], math.Abs(j.val[k]))
+			w.scale[r] = max(w.scale[r], math.Abs(j.val[k]))
 		}
 	}
 	p.size = len(p.src)
@@ -101,22 +128,23 @@ func (w *planner) load(j *Slopes, p *plan) {
 // choose finds the next pivot: a lone entry of its row or column, which costs
 // nothing, else the one with the least fill, and of these the largest.
 func (w *planner) choose() (r, c int) {
-	n := w.n
+	r, c = -1, -1
+	lone := func(i, k int) {
+		if math.Abs(w.a[i*w.n+k])*w.scale[i] >= tinyPivot {
+			r, c = i, k
+		}
+	}
 	for _, i := range w.rows {
-		if w.inRow[i] == 1 {
-			for _, k := range w.cols {
-				if q := int(i)*n + int(k); w.slot[q] >= 0 && math.Abs(w.a[q])*w.scale[i] >= tinyPivot {
-					return int(i), int(k)
-				}
+		if size(w.inRow[i]) == 1 {
+			if each(w.inRow[i], func(k int) { lone(i, k) }); r >= 0 {
+				return r, c
 			}
 		}
 	}
 	for _, k := range w.cols {
-		if w.inCol[k] == 1 {
-			for _, i := range w.rows {
-				if q := int(i)*n + int(k); w.slot[q] >= 0 && math.Abs(w.a[q])*w.scale[i] >= tinyPivot {
-					return int(i), int(k)
-				}
+		if size(w.inCol[k]) == 1 {
+			if each(w.inCol[k], func(i int) { lone(i, k) }); r >= 0 {
+				return r, c
 			}
 		}
 	}
@@ -124,30 +152,24 @@ func (w *planner) choose() (r, c int) {
 }
 
 func (w *planner) cheapest() (r, c int) {
-	n := w.n
 	r, c = -1, -1
-	best, size := int32(math.MaxInt32), 0.0
+	best, most := math.MaxInt, 0.0
 	for _, k := range w.cols {
 		top := 0.0
-		w.at = w.at[:0]
-		for _, i := range w.rows {
-			if q := int(i)*n + int(k); w.slot[q] >= 0 {
-				w.at = append(w.at, i)
-				top = max(top, math.Abs(w.a[q])*w.scale[i])
-			}
-		}
+		each(w.inCol[k], func(i int) { top = max(top, math.Abs(w.a[i*w.n+k])*w.scale[i]) })
 		if !(top >= tinyPivot) {
 			continue
 		}
-		for _, i := range w.at {
-			v := math.Abs(w.a[int(i)*n+int(k)]) * w.scale[i]
+		others := size(w.inCol[k]) - 1
+		each(w.inCol[k], func(i int) {
+			v := math.Abs(w.a[i*w.n+k]) * w.scale[i]
 			if !(v >= pivotShare*top) {
-				continue
+				return
 			}
-			if cost := (w.inRow[i] - 1) * (w.inCol[k] - 1); cost < best || (cost == best && v > size) {
-				best, size, r, c = cost, v, int(i), int(k)
+			if cost := (size(w.inRow[i]) - 1) * others; cost < best || (cost == best && v > most) {
+				best, most, r, c = cost, v, i, k
 			}
-		}
+		})
 	}
 	return r, c
 }
@@ -156,41 +178,32 @@ func (w *planner) cheapest() (r, c int) {
 func (w *planner) eliminate(p *plan, r, c int) {
 	n := w.n
 	w.rows, w.cols = without(w.rows, r), without(w.cols, c)
+	each(w.inRow[r], func(k int) { drop(w.inCol[k], r) })
+	each(w.inCol[c], func(i int) { drop(w.inRow[i], c) })
+	drop(w.inRow[r], c)
 	piv := w.slot[r*n+c]
 	p.least = append(p.least, pivotLeast*math.Abs(w.a[r*n+c]))
-	at := len(p.factor) + 1
-	p.factor = append(p.factor, piv, 0)
-	p.back = append(p.back, int32(r), int32(c), piv, 0)
+	p.factor = append(p.factor, piv, int32(size(w.inCol[c])))
+	p.back = append(p.back, int32(r), int32(c), piv, int32(size(w.inRow[r])))
 	us := len(p.back)
-	for _, k := range w.cols {
-		if u := w.slot[r*n+int(k)]; u >= 0 {
-			p.back = append(p.back, u, k)
-			w.inCol[k]--
-		}
-	}
-	p.back[us-1] = int32(len(p.back)-us) / 2
-	for _, i := range w.rows {
-		l := w.slot[int(i)*n+c]
-		if l < 0 {
-			continue
-		}
-		p.factor[at]++
-		w.inRow[i]--
-		p.forward = append(p.forward, l, int32(r), i)
+	each(w.inRow[r], func(k int) { p.back = append(p.back, w.slot[r*n+k], int32(k)) })
+	each(w.inCol[c], func(i int) {
+		l := w.slot[i*n+c]
+		p.forward = append(p.forward, l, int32(r), int32(i))
 		p.factor = append(p.factor, l, int32(len(p.back)-us)/2)
-		m := w.a[int(i)*n+c] / w.a[r*n+c]
+		m := w.a[i*n+c] / w.a[r*n+c]
 		for q := us; q < len(p.back); q += 2 {
-			t := int(i)*n + int(p.back[q+1])
-			if w.slot[t] < 0 {
-				w.slot[t] = int32(p.size)
+			k := int(p.back[q+1])
+			if !bit(w.inRow[i], k) {
+				w.slot[i*n+k], w.a[i*n+k] = int32(p.size), 0
 				p.size++
-				w.inRow[i]++
-				w.inCol[p.back[q+1]]++
+				put(w.inRow[i], k)
+				put(w.inCol[k], i)
 			}
-			w.a[t] -= m * w.a[r*n+int(p.back[q+1])]
-			p.factor = append(p.factor, w.slot[t], p.back[q])
+			w.a[i*n+k] -= m * w.a[r*n+k]
+			p.factor = append(p.factor, w.slot[i*n+k], p.back[q])
 		}
-	}
+	})
 }
 
 // turn puts the records of back into the order in which they are needed: last pivot first.
@@ -207,9 +220,9 @@ func (w *planner) turn(p *plan) {
 	p.back = out
 }
 
-func without(s []int32, v int) []int32 {
+func without(s []int, v int) []int {
 	for i, x := range s {
-		if int(x) == v {
+		if x == v {
 			return append(s[:i], s[i+1:]...)
 		}
 	}

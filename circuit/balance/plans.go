@@ -7,7 +7,6 @@ type plans struct {
 	of    map[uint64]*plan
 	work  []float64
 	maker *planner
-	spare int // more will be made
 }
 
 // mostPlans bounds the memory of plans; beyond it the dense factors serve.

@@ -121,12 +121,12 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 		return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
 	}
 	s.past.forget()
-	return s.ladder(p, x, levels, cold)
+	return s.ladder(p, x, it, levels, cold)
 }
 
-// ladder goes on where Newton from the step before has ended.
-func (s *Solver) ladder(p Problem, x []float64, levels int, cold func(level int, x []float64)) Result {
-	total, bestNorm := 15, math.Inf(1)
+// ladder goes on where Newton from the step before has ended, after total iterations.
+func (s *Solver) ladder(p Problem, x []float64, total, levels int, cold func(level int, x []float64)) Result {
+	bestNorm := math.Inf(1)
 	try := func(rung Rung, run func() (bool, int)) (Result, bool) {
 		ok, it := run()
 		total += it

@@ -1,0 +1,114 @@
+package balance
+
+import (
+	"math"
+	"math/rand/v2"
+	"testing"
+
+	"gonum.org/v1/gonum/mat"
+)
+
+// The replayed elimination gives the step that a library finds for the full matrix,
+// also for other numbers than it was made for.
+func TestPlanAgainstLibrary(t *testing.T) {
+	solved := 0
+	for seed := uint64(0); seed < 400; seed++ {
+		r := rand.New(rand.NewPCG(seed, 3))
+		n := 1 + r.IntN(90)
+		j, key := newSlopes(n), make([]uint64, (n+63)/64)
+		add := func(i, k int) {
+			for range 2 {
+				j.Add(i, k, 0)
+				j.place()
+			}
+		}
+		for i := range n {
+			add(i, i)
+			for range r.IntN(4) {
+				add(i, r.IntN(n))
+			}
+			if r.IntN(3) == 0 {
+				put(key, i)
+			}
+		}
+		draw := func() {
+			for k := range j.val[1:] {
+				j.val[k+1] = (1 + r.Float64()) * math.Pow(10, 2*r.Float64()) * float64(1-2*r.IntN(2))
+			}
+		}
+		draw()
+		p := newPlanner(n).make(j, key)
+		if !p.sparse {
+			continue
+		}
+		draw()
+		work := make([]float64, p.size)
+		if !p.run(j.val, work) {
+			continue // a pivot became small: the solver takes the dense factors
+		}
+		a, b, dx, rhs := mat.NewDense(n, n, nil), make([]float64, n), make([]float64, n), make([]float64, n)
+		for i := range n {
+			b[i] = r.Float64() - 0.5
+			rhs[i] = -b[i]
+			if bit(key, i) {
+				dx[i] = -b[i]
+				a.Set(i, i, 1)
+			}
+		}
+		for k := 1; k < len(j.val); k++ {
+			if i, c := int(j.row[k]), int(j.col[k]); !bit(key, i) {
+				a.Set(i, c, j.val[k])
+			}
+		}
+		var lib mat.LU
+		lib.Factorize(a)
+		var want mat.VecDense
+		if lib.Cond() > 1e6 || lib.SolveVecTo(&want, false, mat.NewVecDense(n, rhs)) != nil {
+			continue
+		}
+		p.solve(j.val, work, b, dx, true)
+		for i := range dx {
+			if d := math.Abs(dx[i] - want.AtVec(i)); d > 1e-7*mat.Norm(&want, math.Inf(1)) {
+				t.Fatalf("seed %d, n = %d: step %d is %g, gonum %g", seed, n, i, dx[i], want.AtVec(i))
+			}
+		}
+		solved++
+	}
+	if solved < 100 {
+		t.Errorf("only %d matrices compared", solved)
+	}
+}
+
+// A problem that moves between sets of bounds: the answer must not depend on which
+// solutions came before.
+func TestForetoldStart(t *testing.T) {
+	f := func(q float64) problem {
+		return problem{3, func(x, g []float64) {
+			g[0], g[1], g[2] = x[0]+x[1]*x[1]-math.Sin(q), x[1]-x[0]-0.5*math.Cos(q), x[2]-x[0]*x[1]
+		}}
+	}
+	set := func() *Solver {
+		s := NewSolver(3)
+		copy(s.Lo, []float64{-0.5, 0, -0.1})
+		copy(s.Hi, []float64{0.5, 1, 0.1})
+		return s
+	}
+	cold := func(_ int, x []float64) { clear(x) }
+	warm, x := set(), make([]float64, 3)
+	for k := range 2000 {
+		q := 0.01 * float64(k)
+		warm.Foretell = true
+		if res := warm.Solve(f(q), x, 3, cold); !res.Solved() {
+			t.Fatalf("step %d not solved", k)
+		}
+		y := make([]float64, 3)
+		if res := set().Solve(f(q), y, 3, cold); !res.Solved() {
+			t.Fatalf("step %d not solved from cold", k)
+		}
+		for i := range x {
+			if math.Abs(x[i]-y[i]) > 1e-9 {
+				t.Fatalf("step %d: x[%d] = %g warm, %g cold", k, i, x[i], y[i])
+			}
+		}
+	}
+}
