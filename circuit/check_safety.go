@@ -1,6 +1,10 @@
 package circuit
 
-import "barlitre/circuit/duty"
+import (
+	"math"
+
+	"barlitre/circuit/duty"
+)
 
 // safety gives the cautions that a drawing asks for.
 func (k *checker) safety() {
@@ -96,8 +100,12 @@ func (k *checker) standsUnderLoad(d *duty.Duty, axis string) bool {
 		if a.Name != axis || s.Axes[i].Load == nil {
 			continue
 		}
-		for j, f := range s.Axes[i].Load {
-			if s.Axes[i].Standing[j] && f != 0 {
+		top := 0.0
+		for _, f := range s.Axes[i].Load {
+			top = math.Max(top, math.Abs(f))
+		}
+		for j, f := range s.Axes[i].Load { // what is left of a ramp at the threshold of standstill is no load
+			if s.Axes[i].Standing[j] && math.Abs(f) > 0.01*top {
 				return true
 			}
 		}
