@@ -28,13 +28,14 @@ func newDumper(f *Frame) *dumper {
 	if d.path == "" {
 		return d
 	}
-	d.quit = make(chan struct{})
+	quit := make(chan struct{})
+	d.quit = quit
 	go func() {
 		tick := time.NewTicker(150 * time.Millisecond)
 		defer tick.Stop()
 		for {
 			select {
-			case <-d.quit:
+			case <-quit:
 				return
 			case <-tick.C:
 				fyne.DoAndWait(d.write)
