@@ -25,17 +25,14 @@ var flowControlKind = &Kind{
 	},
 	Symbol: func(b *Block) string { return checked(b, "flow_2way") },
 	build: func(k *compiler, b *Block) model {
-		return &flowControlModel{A: k.node(b, "A"), B: k.node(b, "B"), q: k.unknown(otherRow, b.ID), set: k.param(b, "set_flow"), least: k.param(b, "least_drop"),
-			qA: k.port(b, "A"), qB: k.port(b, "B"), loss: k.channel(Loss, b, "flow control"), back: k.returnCheck(b, "B", "A")}
+		return &flowControlModel{checkedThrottle: k.checkedThrottle(b, "flow control"), set: k.param(b, "set_flow"), least: k.param(b, "least_drop")}
 	},
 }
 
+// flowControlModel: what the compensator adds to the throat is held back by the bound of q.
 type flowControlModel struct {
-	back         returnCheck
-	A, B, q      slot
-	set, least   int
-	qA, qB, loss int
-	t            throat
+	checkedThrottle
+	set, least int
 }
 
 func (m *flowControlModel) clone() model { c := *m; return &c }
@@ -44,26 +41,4 @@ func (m *flowControlModel) bind(b *binding) {
 	m.t = throatOf(b.p[m.set]/b.scales.q, b.p[m.least]/b.scales.p)
 	b.bound.Lo[m.q], b.bound.Hi[m.q] = math.Inf(-1), b.p[m.set]/b.scales.q
 	m.back.bind(b)
-}
-
-func (m *flowControlModel) begin(*step) {}
-
-func (m *flowControlModel) eval(e *eval) {
-	q := e.branch(m.A, m.B, m.q)
-	r, dr := m.t.at(q)
-	e.drop(m.A, m.B, m.q, r, dr) // what the compensator adds is held back by the bound of q
-	m.back.eval(e)
-}
-
-func (m *flowControlModel) book(k *booking) {
-	q := k.val(m.q)
-	k.lose(m.loss, k.watts((k.val(m.A)-k.val(m.B))*q))
-	q -= m.back.book(k)
-	k.put(m.qA, k.m3s(q))
-	k.put(m.qB, -k.m3s(q))
-}
-
-func (m *flowControlModel) cold(s *step, level int, x []float64) {
-	x[m.q] = 0.05
-	m.back.cold(x)
 }

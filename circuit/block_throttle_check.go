@@ -26,19 +26,15 @@ var throttleCheckKind = &Kind{
 	},
 	Symbol: func(*Block) string { return "throttle_check" },
 	build: func(k *compiler, b *Block) model {
-		m := &throttleCheckModel{A: k.node(b, "A"), B: k.node(b, "B"), q: k.unknown(otherRow, b.ID), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"),
-			qA: k.port(b, "A"), qB: k.port(b, "B"), loss: k.channel(Loss, b, "metering"), back: k.returnCheck(b, "B", "A")}
+		m := &throttleCheckModel{checkedThrottle: k.checkedThrottle(b, "metering"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop")}
 		m.back.q = k.unknown(otherRow, b.ID+" check valve")
 		return m
 	},
 }
 
 type throttleCheckModel struct {
-	back         returnCheck
-	A, B, q      slot
-	qN, dN       int
-	qA, qB, loss int
-	t            throat
+	checkedThrottle
+	qN, dN int
 }
 
 func (m *throttleCheckModel) clone() model { c := *m; return &c }
@@ -46,26 +42,4 @@ func (m *throttleCheckModel) clone() model { c := *m; return &c }
 func (m *throttleCheckModel) bind(b *binding) {
 	m.t = throatOf(b.p[m.qN]/b.scales.q, b.p[m.dN]/b.scales.p)
 	m.back.bind(b)
-}
-
-func (m *throttleCheckModel) begin(*step) {}
-
-func (m *throttleCheckModel) eval(e *eval) {
-	q := e.branch(m.A, m.B, m.q)
-	r, dr := m.t.at(q)
-	e.drop(m.A, m.B, m.q, r, dr)
-	m.back.eval(e)
-}
-
-func (m *throttleCheckModel) book(k *booking) {
-	q := k.val(m.q)
-	k.lose(m.loss, k.watts((k.val(m.A)-k.val(m.B))*q))
-	q -= m.back.book(k)
-	k.put(m.qA, k.m3s(q))
-	k.put(m.qB, -k.m3s(q))
-}
-
-func (m *throttleCheckModel) cold(s *step, level int, x []float64) {
-	x[m.q] = 0.05
-	m.back.cold(x)
 }

@@ -105,3 +105,38 @@ func checked(b *Block, symbol string) string {
 	}
 	return symbol
 }
+
+// checkedThrottle is a throat from A to B beside a check valve from B to A.
+type checkedThrottle struct {
+	back         returnCheck
+	A, B, q      slot
+	qA, qB, loss int
+	t            throat
+}
+
+func (k *compiler) checkedThrottle(b *Block, loss string) checkedThrottle {
+	return checkedThrottle{A: k.node(b, "A"), B: k.node(b, "B"), q: k.unknown(otherRow, b.ID),
+		qA: k.port(b, "A"), qB: k.port(b, "B"), loss: k.channel(Loss, b, loss), back: k.returnCheck(b, "B", "A")}
+}
+
+func (m *checkedThrottle) begin(*step) {}
+
+func (m *checkedThrottle) eval(e *eval) {
+	q := e.branch(m.A, m.B, m.q)
+	r, dr := m.t.at(q)
+	e.drop(m.A, m.B, m.q, r, dr)
+	m.back.eval(e)
+}
+
+func (m *checkedThrottle) book(k *booking) {
+	q := k.val(m.q)
+	k.lose(m.loss, k.watts((k.val(m.A)-k.val(m.B))*q))
+	q -= m.back.book(k)
+	k.put(m.qA, k.m3s(q))
+	k.put(m.qB, -k.m3s(q))
+}
+
+func (m *checkedThrottle) cold(s *step, level int, x []float64) {
+	x[m.q] = 0.05
+	m.back.cold(x)
+}

@@ -11,6 +11,7 @@ import (
 	"fyne.io/fyne/v2/driver/desktop"
 
 	"barlitre/app/station"
+	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
 	"barlitre/machines/units"
 	"barlitre/samples"
@@ -25,14 +26,14 @@ func sample(t *testing.T, name string) string {
 	return string(data)
 }
 
-func shown(t *testing.T, text string, files map[string]string) (*fake, *Station) {
+func shown(t *testing.T, text string, files map[string]string) (*stationtest.Frame, *Station) {
 	t.Helper()
-	f := opened(t, New, text, files)
-	return f, f.station.(*Station)
+	f := stationtest.Open(t, New, text, files)
+	return f, f.Station.(*Station)
 }
 
 // press clicks a cell of the table as a mouse does.
-func press(t *testing.T, f *fake, table *widgets.Table, name string) {
+func press(t *testing.T, f *stationtest.Frame, table *widgets.Table, name string) {
 	t.Helper()
 	for _, p := range table.Parts() {
 		if p.Name == name {
@@ -46,7 +47,7 @@ func press(t *testing.T, f *fake, table *widgets.Table, name string) {
 }
 
 // typed replaces what stands in the selected cell.
-func typed(f *fake, text string) {
+func typed(f *stationtest.Frame, text string) {
 	runes := []rune(text)
 	f.Win.Canvas().Focused().TypedRune(runes[0])
 	for _, r := range runes[1:] {
@@ -54,7 +55,7 @@ func typed(f *fake, text string) {
 	}
 }
 
-func key(f *fake, name fyne.KeyName) {
+func key(f *stationtest.Frame, name fyne.KeyName) {
 	f.Win.Canvas().Focused().TypedKey(&fyne.KeyEvent{Name: name})
 }
 
@@ -81,10 +82,10 @@ func TestCellChangesTheFileAndNothingElse(t *testing.T) {
 		if want == before {
 			t.Fatalf("%s: the test replaces nothing", c.cell)
 		}
-		if got := f.text(); got != want {
+		if got := f.FileText(); got != want {
 			t.Errorf("%s := %s: the file is not what it was but for the value:\n%s", c.cell, c.typed, firstDifference(got, want))
 		}
-		f.settle()
+		f.Edited()
 		if s.table.Refused() {
 			t.Errorf("%s := %s: refused: %s", c.cell, c.typed, s.refusal.Text)
 		}
@@ -92,7 +93,7 @@ func TestCellChangesTheFileAndNothingElse(t *testing.T) {
 			t.Errorf("%s: Enter went to row %d", c.cell, row)
 		}
 		f.Document.Undo()
-		if f.text() != before {
+		if f.FileText() != before {
 			t.Errorf("%s: undo did not bring the file back", c.cell)
 		}
 	}
@@ -123,14 +124,14 @@ func TestRefusalsStay(t *testing.T) {
 		press(t, f, s.table, c.cell)
 		typed(f, c.typed)
 		key(f, fyne.KeyReturn)
-		if f.text() != before {
+		if f.FileText() != before {
 			t.Fatalf("%s := %s was taken", c.cell, c.typed)
 		}
 		if !strings.Contains(s.refusal.Text, c.reason) {
 			t.Errorf("%s := %s: the reason is %q, want %q in it", c.cell, c.typed, s.refusal.Text, c.reason)
 		}
 		f.Win.Canvas().Focus(s.plot) // away
-		f.station.Changed(station.Model)
+		f.Station.Changed(station.Model)
 		if got := cellText(t, s.table, c.cell); got != "⚠ "+c.typed {
 			t.Errorf("%s: %q stands in the cell, want what was typed", c.cell, got)
 		}
@@ -163,8 +164,8 @@ func TestPasteIsOneStep(t *testing.T) {
 	fyne.CurrentApp().Clipboard().SetContent("0,11\t9\r\n0,12\t11\n")
 	press(t, f, s.table, "2.ram.speed")
 	f.Win.Canvas().Focused().(fyne.Shortcutable).TypedShortcut(&fyne.ShortcutPaste{})
-	if f.failed() != nil {
-		t.Fatal(f.failed())
+	if f.LastError() != nil {
+		t.Fatal(f.LastError())
 	}
 	d := f.Document.File().Duties[0]
 	for _, c := range []struct{ got, want float64 }{{d.Tracks[0].Values[2], 0.11}, {d.Tracks[0].Values[3], 0.12}, {d.Tracks[1].Values[2], 9e3}, {d.Tracks[1].Values[3], 11e3}} {
@@ -173,13 +174,13 @@ func TestPasteIsOneStep(t *testing.T) {
 		}
 	}
 	f.Document.Undo()
-	if f.text() != before {
+	if f.FileText() != before {
 		t.Error("one undo did not take the whole block back")
 	}
 	fyne.CurrentApp().Clipboard().SetContent("0.2\t8\nfast\t9")
 	f.Win.Canvas().Focused().(fyne.Shortcutable).TypedShortcut(&fyne.ShortcutPaste{})
-	if f.failed() == nil || f.text() != before {
-		t.Errorf("a block with a fault: error %v, file changed %v", f.failed(), f.text() != before)
+	if f.LastError() == nil || f.FileText() != before {
+		t.Errorf("a block with a fault: error %v, file changed %v", f.LastError(), f.FileText() != before)
 	}
 }
 
@@ -219,15 +220,15 @@ func TestRecordedDutyIsReadOnly(t *testing.T) {
 	press(t, f, s.table, "1.ram.speed")
 	typed(f, "7")
 	key(f, fyne.KeyReturn)
-	if f.text() != recordedFile {
+	if f.FileText() != recordedFile {
 		t.Error("a recorded duty was changed")
 	}
 	if !strings.Contains(s.refusal.Text, "log.csv") {
 		t.Errorf("hint %q", s.refusal.Text)
 	}
-	f.look("duty-recorded", 930, 480)
+	f.Picture("duty-recorded", 930, 480)
 	// By hand: ∫v dt = 0.1·1 + 0.1/2·1 = 0.15 m; standstill 0.001·0.1 m/s.
-	notes := f.dump()
+	notes := f.Dump()
 	for _, want := range []string{"ends 150\u202fmm from where it began", "standing below 0.10\u202fmm/s, 0.10\u202f% of its highest speed 0.100\u202fm/s"} {
 		if !strings.Contains(notes, want) {
 			t.Errorf("notes lack %q:\n%s", want, notes)
@@ -263,13 +264,13 @@ func TestClockFollows(t *testing.T) {
 		t.Errorf("the arrow key leads to %g s, want 17.2", f.Time)
 	}
 	f.Comma = true
-	f.station.Changed(station.Settings)
+	f.Station.Changed(station.Settings)
 	f.SetClock(17)
 	if got := s.plot.Parts()[0].Text; got != "0,130\u202fm/s" {
 		t.Errorf("with a comma: %q", got)
 	}
 	f.Units = units.US
-	f.station.Changed(station.Settings)
+	f.Station.Changed(station.Settings)
 	if got := s.plot.Parts()[1].Text; !strings.HasSuffix(got, "lbf") {
 		t.Errorf("load in US units: %q", got)
 	}
@@ -277,7 +278,7 @@ func TestClockFollows(t *testing.T) {
 
 func TestPickerAndMend(t *testing.T) {
 	f, s := shown(t, sample(t, "baling-press.yaml"), nil)
-	if f.station.Mend() {
+	if f.Station.Mend() {
 		t.Errorf("the sample has a duty to mend: %v", f.Document.Findings())
 	}
 	s.picker.SetSelectedIndex(1)
@@ -287,10 +288,10 @@ func TestPickerAndMend(t *testing.T) {
 	bad := strings.Replace(sample(t, "baling-press.yaml"), "ram.load: [0 kN, 0 kN]}", "ram.load: [0 kN]}", 1)
 	f, s = shown(t, bad, nil)
 	f.SetDuty(1)
-	if !f.station.Mend() {
+	if !f.Station.Mend() {
 		t.Error("a track that is too short needs no mending")
 	}
-	if dump := f.dump(); !strings.Contains(dump, "duty.note.finding1") || !strings.Contains(dump, "ram.load") {
+	if dump := f.Dump(); !strings.Contains(dump, "duty.note.finding1") || !strings.Contains(dump, "ram.load") {
 		t.Errorf("the finding is not shown:\n%s", dump)
 	}
 	if got := cellText(t, s.table, "1.ram.load"); got != "–" {
@@ -300,7 +301,7 @@ func TestPickerAndMend(t *testing.T) {
 
 func TestEmpty(t *testing.T) {
 	f, s := shown(t, "format: barlitre/1\noil: {temperature: 50 C, density: 870 kg/m3, viscosity: 40 mPa s}\naxes: {}\nduties: []\ncircuits: []\n", nil)
-	if s.filled.Visible() || !strings.Contains(f.dump(), "No duty yet") {
+	if s.filled.Visible() || !strings.Contains(f.Dump(), "No duty yet") {
 		t.Error("the empty state is not shown")
 	}
 	f.SetDuty(3)
@@ -312,7 +313,7 @@ func TestFitsSmallWindows(t *testing.T) {
 	if m := s.Content().MinSize(); m.Width > 900 || m.Height > 480 {
 		t.Errorf("the least size is %v", m)
 	}
-	f.theme(false, 2)
+	f.Theme(false, 2)
 	if m := s.Content().MinSize(); m.Width > 1800 || m.Height > 960 {
 		t.Errorf("at twice the scale the least size is %v", m)
 	}
@@ -324,11 +325,11 @@ func TestPictures(t *testing.T) {
 	press(t, f, s.table, "5.ram.load")
 	typed(f, "5 bar")
 	key(f, fyne.KeyReturn)
-	f.look("duty-light", 1190, 590)
+	f.Picture("duty-light", 1190, 590)
 	key(f, fyne.KeyEscape)
-	f.theme(true, 1)
-	f.look("duty-dark", 1190, 590)
-	f.look("duty-dark-small", 930, 480)
-	f.theme(false, 1.5)
-	f.look("duty-light-150", 1190, 590)
+	f.Theme(true, 1)
+	f.Picture("duty-dark", 1190, 590)
+	f.Picture("duty-dark-small", 930, 480)
+	f.Theme(false, 1.5)
+	f.Picture("duty-light-150", 1190, 590)
 }

@@ -57,7 +57,7 @@ func (s *Station) tracksOf(d *cycle.Duty) []track {
 }
 
 func (s *Station) fillPlot(d *cycle.Duty) {
-	p := figures.Plot{Phases: phasesOf(d), Axis: "time", AxisUnit: s.tracks[0].unit.Label()}
+	p := figures.Plot{Phases: figures.PhasesOf(d), Axis: "time", AxisUnit: s.tracks[0].unit.Label()}
 	for _, t := range s.tracks[1:] {
 		role := figures.RoleGain
 		if t.what == cycle.Load.String() {
@@ -69,20 +69,6 @@ func (s *Station) fillPlot(d *cycle.Duty) {
 	s.plot.SetMin(fyne.NewSize(300, float32(60+62*len(p.Lanes))))
 	s.plot.SetPlot(p)
 	s.plot.SetClock(s.ctx.Clock())
-}
-
-func phasesOf(d *cycle.Duty) []figures.Phase {
-	var out []figures.Phase
-	for i, p := range d.Phases {
-		to := p.From
-		if i+1 < len(d.Phases) {
-			to = d.Phases[i+1].From
-		} else if n := len(d.Time); n > 0 {
-			to = d.Time[n-1]
-		}
-		out = append(out, figures.Phase{Name: p.Name, From: p.From, To: to})
-	}
-	return out
 }
 
 func inUnit(si []float64, u units.Unit) []float64 {

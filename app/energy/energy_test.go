@@ -9,6 +9,7 @@ import (
 	"fyne.io/fyne/v2/driver/desktop"
 
 	"barlitre/app/station"
+	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/audit/figures"
@@ -17,14 +18,14 @@ import (
 	"barlitre/samples"
 )
 
-func shown(t *testing.T, name string) (*fake, *Station) {
+func shown(t *testing.T, name string) (*stationtest.Frame, *Station) {
 	t.Helper()
 	data, err := samples.Read(name)
 	if err != nil {
 		t.Fatal(err)
 	}
-	f := opening(t, New, string(data), nil)
-	return f, f.station.(*Station)
+	f := stationtest.Open(t, New, string(data), nil)
+	return f, f.Station.(*Station)
 }
 
 func part(t *testing.T, parts []widgets.Part, name string) widgets.Part {
@@ -49,7 +50,7 @@ func clickStep(t *testing.T, s *Station, name string) {
 }
 
 // selectRow goes to a row as the keyboard does, from one above it.
-func selectRow(t *testing.T, f *fake, s *Station, name string) {
+func selectRow(t *testing.T, f *stationtest.Frame, s *Station, name string) {
 	t.Helper()
 	for i, l := range s.lines {
 		if l.row != nil && s.tableRow(i).Name == name {
@@ -85,8 +86,8 @@ func TestStepOpensTheReportsDigits(t *testing.T) {
 		}
 	}
 	clickStep(t, s, "2.U1: converter")
-	if f.circuit != 1 || f.block != "U1" {
-		t.Errorf("the block at hand is %q of circuit %d", f.block, f.circuit)
+	if f.Circuit != 1 || f.Block != "U1" {
+		t.Errorf("the block at hand is %q of circuit %d", f.Block, f.Circuit)
 	}
 	relief := s.shown.LossCalculation(0, 0, "RV1", "relief spill", units.Metric)
 	clickStep(t, s, "1.RV1: relief spill")
@@ -229,7 +230,7 @@ func TestFollowsEdits(t *testing.T) {
 	if err := f.Document.Set(f.Solution().Circuits[0].Circuit.Name+"/RV1.crack", "200 bar"); err != nil {
 		t.Fatal(err)
 	}
-	f.settle()
+	f.Edited()
 	if s.calc.value.Text == before || !strings.Contains(s.calc.title.Text, "RV1: relief spill") || !strings.Contains(s.calc.numbers.Text, "pc = 200 bar") {
 		t.Errorf("after the edit: %q", s.calc.DumpText())
 	}
@@ -238,14 +239,14 @@ func TestFollowsEdits(t *testing.T) {
 func TestLocalAndUnits(t *testing.T) {
 	f, s := shown(t, "baling-press.yaml")
 	f.Comma = true
-	f.station.Changed(station.Settings)
+	f.Station.Changed(station.Settings)
 	f.Win.Canvas().Capture() // the figure names its parts when it is drawn
 	clickStep(t, s, "1.RV1: relief spill")
 	if !strings.Contains(s.calc.value.Text, "74,96\u202fkJ") || !strings.Contains(part(t, s.steps.Parts(), "1.RV1: relief spill").Text, "74,96") {
 		t.Errorf("with a comma: %q", s.calc.value.Text)
 	}
 	f.Comma, f.Units = false, units.SI
-	f.station.Changed(station.Settings)
+	f.Station.Changed(station.Settings)
 	if !strings.Contains(s.calc.value.Text, "74\u202f960\u202fJ") {
 		t.Errorf("in SI: %q", s.calc.value.Text)
 	}
@@ -260,12 +261,12 @@ func TestEmptyStates(t *testing.T) {
 		{head + "duties: []\n" + bench, "no duty"},
 		{head + points + strings.Replace(bench, "tank", "tanc", 1), "could be solved"},
 	} {
-		f := opening(t, New, c.text, nil)
-		s := f.station.(*Station)
+		f := stationtest.Open(t, New, c.text, nil)
+		s := f.Station.(*Station)
 		if s.filled.Visible() || !strings.Contains(s.empty.Text, c.want) {
 			t.Errorf("%q, want %q", s.empty.Text, c.want)
 		}
-		if f.station.Mend() {
+		if f.Station.Mend() {
 			t.Error("an empty audit has no balance to mend")
 		}
 	}
@@ -276,7 +277,7 @@ func TestFitsSmallWindows(t *testing.T) {
 	if m := s.Content().MinSize(); m.Width > 900 || m.Height > 480 {
 		t.Errorf("the least size is %v", m)
 	}
-	f.theme(false, 2)
+	f.Theme(false, 2)
 	if m := s.Content().MinSize(); m.Width > 1800 || m.Height > 960 {
 		t.Errorf("at twice the scale the least size is %v", m)
 	}
@@ -286,21 +287,21 @@ func TestFitsSmallWindows(t *testing.T) {
 func TestLooks(t *testing.T) {
 	f, s := shown(t, "baling-press.yaml")
 	clickStep(t, s, "1.RV1: relief spill")
-	f.look("energy-light", 1190, 590)
-	dump := f.dump()
+	f.Picture("energy-light", 1190, 590)
+	dump := f.Dump()
 	for _, want := range []string{"energy.scope\t", "energy.steps\t", "energy.steps/2.drawn from the supply\t", "energy.table\t", "energy.table/As found/RV1: relief spill.cycle\t", "energy.calculation\t"} {
 		if !strings.Contains(dump, want) {
 			t.Errorf("the dump lacks %q:\n%s", want, dump)
 		}
 	}
-	f.theme(true, 1)
-	f.look("energy-dark", 1190, 590)
-	f.look("energy-dark-small", 930, 480)
+	f.Theme(true, 1)
+	f.Picture("energy-dark", 1190, 590)
+	f.Picture("energy-dark-small", 930, 480)
 	s.scope.SetSelected(wholeYear)
-	f.look("energy-dark-year", 1190, 590)
-	f.theme(false, 1.5)
-	f.look("energy-light-150", 1190, 590)
+	f.Picture("energy-dark-year", 1190, 590)
+	f.Theme(false, 1.5)
+	f.Picture("energy-light-150", 1190, 590)
 	f, _ = shown(t, "quayside-winch.yaml")
-	f.look("energy-winch", 1190, 590)
-	f.look("energy-winch-tall", 1500, 1300)
+	f.Picture("energy-winch", 1190, 590)
+	f.Picture("energy-winch-tall", 1500, 1300)
 }

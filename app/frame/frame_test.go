@@ -2,7 +2,6 @@ package frame
 
 import (
 	"image/color"
-	"image/png"
 	"os"
 	"path/filepath"
 	"strings"
@@ -16,6 +15,7 @@ import (
 
 	"barlitre/app/document"
 	"barlitre/app/station"
+	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
 	"barlitre/machines/units"
 )
@@ -109,21 +109,7 @@ func (b *bench) verdictText() string {
 }
 
 // capture draws the window; with BARLITRE_PICTURES set it is kept there.
-func (b *bench) capture(name string) {
-	img := b.win.Canvas().Capture()
-	dir := os.Getenv("BARLITRE_PICTURES")
-	if dir == "" {
-		return
-	}
-	f, err := os.Create(filepath.Join(dir, name+".png"))
-	if err != nil {
-		b.t.Fatal(err)
-	}
-	defer f.Close()
-	if err := png.Encode(f, img); err != nil {
-		b.t.Fatal(err)
-	}
-}
+func (b *bench) capture(name string) { stationtest.Picture(b.t, b.win, name) }
 
 func TestVerdictFollowsAnEdit(t *testing.T) {
 	b := newBench(t)

@@ -69,7 +69,7 @@ func (p *plot) load() {
 }
 
 func (p *plot) stackOf(s *audit.Solution, i int, d *duty.Duty) figures.Stack {
-	out := figures.Stack{Unit: p.unit.Label(), Axis: "time", AxisUnit: "s", Phases: phases(d)}
+	out := figures.Stack{Unit: p.unit.Label(), Axis: "time", AxisUnit: "s", Phases: figures.PhasesOf(d)}
 	write := func(watt float64) string { return p.ctx.Text(watt, units.Power, 3) }
 	for _, c := range s.Circuits {
 		if i >= len(c.Duties) || c.Duties[i].Balance == nil {
@@ -80,21 +80,6 @@ func (p *plot) stackOf(s *audit.Solution, i int, d *duty.Duty) figures.Stack {
 			lane.Note = "drawn from the lowest and highest value of each stretch"
 		}
 		out.Lanes = append(out.Lanes, lane)
-	}
-	return out
-}
-
-func phases(d *duty.Duty) []figures.Phase {
-	if len(d.Time) == 0 {
-		return nil
-	}
-	var out []figures.Phase
-	for i, p := range d.Phases {
-		to := d.Time[len(d.Time)-1]
-		if i+1 < len(d.Phases) {
-			to = d.Phases[i+1].From
-		}
-		out = append(out, figures.Phase{Name: p.Name, From: p.From, To: to})
 	}
 	return out
 }

@@ -1,10 +1,7 @@
 package sheet
 
 import (
-	"image/png"
 	"math"
-	"os"
-	"path/filepath"
 	"strings"
 	"testing"
 	"time"
@@ -15,6 +12,7 @@ import (
 
 	"barlitre/app/document"
 	"barlitre/app/station"
+	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/audit/figures"
@@ -161,22 +159,7 @@ func (b *bench) theme(dark bool, scale float32) {
 }
 
 // picture writes what is on the window into the folder that BARLITRE_PICTURES names.
-func (b *bench) picture(name string) {
-	b.t.Helper()
-	img := b.win.Canvas().Capture()
-	dir := os.Getenv("BARLITRE_PICTURES")
-	if dir == "" {
-		return
-	}
-	f, err := os.Create(filepath.Join(dir, name+".png"))
-	if err != nil {
-		b.t.Fatal(err)
-	}
-	defer f.Close()
-	if err := png.Encode(f, img); err != nil {
-		b.t.Fatal(err)
-	}
-}
+func (b *bench) picture(name string) { stationtest.Picture(b.t, b.win, name) }
 
 // middle is where a block is on a sheet.
 func (b *bench) middle(sheet int, block string) fyne.Position {

@@ -55,26 +55,12 @@ func (l *layout) dutyText(i int) string {
 	return strings.Join(parts, " ")
 }
 
-func phases(d *duty.Duty) []figures.Phase {
-	var out []figures.Phase
-	for i, p := range d.Phases {
-		to := p.From
-		if i+1 < len(d.Phases) {
-			to = d.Phases[i+1].From
-		} else if n := len(d.Time); n > 0 {
-			to = d.Time[n-1]
-		}
-		out = append(out, figures.Phase{Name: p.Name, From: p.From, To: to})
-	}
-	return out
-}
-
 // lanesAbreast is how many lanes a plot has at most before it is cut in two.
 const lanesAbreast = 8
 
 // first returns the plot of as many lanes as one plot takes.
 func (l *layout) first(lanes []figures.Lane, d *duty.Duty) figures.Plot {
-	return figures.Plot{Lanes: lanes[:min(len(lanes), lanesAbreast)], Phases: phases(d), Axis: "time",
+	return figures.Plot{Lanes: lanes[:min(len(lanes), lanesAbreast)], Phases: figures.PhasesOf(d), Axis: "time",
 		AxisUnit: units.Preferred(units.Time, l.r.System).Label()}
 }
 

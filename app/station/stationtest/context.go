@@ -3,9 +3,6 @@
 package stationtest
 
 import (
-	"image/png"
-	"os"
-	"path/filepath"
 	"strings"
 	"testing"
 	"time"
@@ -94,25 +91,16 @@ func refresh(o fyne.CanvasObject) {
 	}
 }
 
-// Looking reports whether pictures are asked for.
-func Looking() bool { return os.Getenv("BARLITRE_LOOK") != "" }
-
-// Look writes a picture of the window into the folder that the environment variable
-// BARLITRE_LOOK names; nothing without it.
-func (c *Context) Look(name string) {
-	dir := os.Getenv("BARLITRE_LOOK")
-	if dir == "" {
-		return
+// LastError is the last error the station showed.
+func (c *Context) LastError() error {
+	if n := len(c.Failed); n > 0 {
+		return c.Failed[n-1]
 	}
-	file, err := os.Create(filepath.Join(dir, name+".png"))
-	if err != nil {
-		c.T.Fatal(err)
-	}
-	defer file.Close()
-	if err := png.Encode(file, c.Win.Canvas().Capture()); err != nil {
-		c.T.Error(err)
-	}
+	return nil
 }
+
+// Look writes a picture of the window when asked to.
+func (c *Context) Look(name string) { Picture(c.T, c.Win, name) }
 
 // SetTheme changes the theme; scale 0 is 1.
 func (c *Context) SetTheme(dark bool, scale float32) {
