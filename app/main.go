@@ -2,7 +2,11 @@
 // window on a file, or on a sample; the commands work without a display.
 package main
 
-import "os"
+import (
+	"os"
+
+	_ "barlitre/app/locale" // before the toolkit starts
+)
 
 // version is that of the program.
 const version = "0.2.0"
