@@ -30,6 +30,7 @@ const (
 	gapWidth    = 8
 	panelShare  = 0.68 // of the height; the findings have the rest
 	twoSheets   = 560  // width under which two sheets cannot be read
+	loneShare   = 0.72 // of the width for the first sheet while the second is empty
 )
 
 // pageLayout places bar, sheets and panel.
@@ -75,9 +76,12 @@ func (l pageLayout) Layout(_ []fyne.CanvasObject, size fyne.Size) {
 		put(s.cards[s.active].content, gap, top, right-gap, height)
 		return
 	}
-	half := (right - 2*gap) / 2
-	put(s.cards[0].content, gap, top, half, height)
-	put(s.cards[1].content, 2*gap+half, top, half, height)
+	first := (right - 2*gap) / 2
+	if s.editors[1].circuit < 0 { // an empty sheet needs no more than its hint
+		first = (right - 2*gap) * loneShare
+	}
+	put(s.cards[0].content, gap, top, first, height)
+	put(s.cards[1].content, 2*gap+first, top, right-2*gap-first, height)
 }
 
 func put(o fyne.CanvasObject, x, y, w, h float32) {

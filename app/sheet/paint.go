@@ -88,13 +88,14 @@ func (e *editor) drawLegend(p pen.Pen, w, h float64) {
 // drawEmpty says what belongs on the sheet and how to get it there.
 func (e *editor) drawEmpty(p pen.Pen, w, h float64) {
 	pal, k := e.s.ctx.Palette(), float64(widgets.Scale())
-	lines := []string{"A proposal stands here, beside the circuit as found.", "Add a circuit with role: proposal to the audit file."}
+	head, lines := 2, []string{"A proposal stands here,", "beside the circuit as found.", "Add a circuit with role: proposal", "to the audit file."}
 	if e.index == 0 {
+		head = 1
 		lines = []string{"No circuit in this audit yet.", "File > New has one of each kind to begin with;", "File > Open takes an audit file."}
 	}
 	y := h/2 - 20*k
 	for i, l := range lines {
-		p.Text(pen.Pt{X: w / 2, Y: y}, l, 12.5*k, map[bool]color.NRGBA{true: pal.Ink, false: pal.Secondary}[i == 0], pen.Center, false)
+		p.Text(pen.Pt{X: w / 2, Y: y}, l, 12.5*k, map[bool]color.NRGBA{true: pal.Ink, false: pal.Secondary}[i < head], pen.Center, false)
 		y += 19 * k
 	}
 }
