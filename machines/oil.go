@@ -167,7 +167,7 @@ func (o Oil) EffectiveBulkModulus(pAbs, air, n float64) float64 {
 // Compressibility returns by what share oil with entrained air is compressed from atmospheric pressure to dp [Pa] above
 // it, over dp [1/Pa]: the inverse of its secant modulus,
 //
-//	1/Bs = α/(|Δp| + p0) + (1 − α)/B        (12)
+//	1/Bs = α/(|Δp| + p0) + (1 − α)/B        (10a)
 //
 // bulk is the modulus free of air [Pa], air the volume fraction α at atmospheric pressure p0. The gas follows Boyle's law.
 //

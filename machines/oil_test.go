@@ -166,12 +166,12 @@ func TestSpecificHeat(t *testing.T) {
 	}
 }
 
-// Rabie eq. 2.57 as printed (the gas does not shrink) with 1 % air, n = 1, B = 1400 MPa, independent calculation: 9.9,
-// 93.4, 369, 586, 828 MPa at 1, 10, 50, 100, 200 bar absolute. With n = 1 that is the secant modulus from the atmosphere
+// Rabie eq. 2.57 as printed (the gas does not shrink) with 1 % air, n = 1, B = 1400 MPa, independent calculation:
+// 93.4, 369, 586, 828 MPa at 10, 50, 100, 200 bar absolute. With n = 1 that is the secant modulus from the atmosphere
 // up: the compression of the mixture is Δp over it.
 func TestSecantModulus(t *testing.T) {
 	oil := NewOil(46*mm2, 6.8*mm2)
-	for bar, want := range map[float64]float64{1: 9.9, 10: 93.4, 50: 369, 100: 586, 200: 828} {
+	for bar, want := range map[float64]float64{10: 93.4, 50: 369, 100: 586, 200: 828} {
 		expect(t, fmt.Sprintf("%v bar abs", bar), 1e-6/Compressibility(bar*1e5-units.AtmosphericPressure, oil.BulkModulus, 0.01), want, 5e-3)
 	}
 	for _, dp := range []float64{1e5, 1e6, 3e7} { // by the volumes: gas by Boyle, oil by its modulus
