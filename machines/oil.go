@@ -164,14 +164,16 @@ func (o Oil) EffectiveBulkModulus(pAbs, air, n float64) float64 {
 	return 1 / (alpha/(n*pAbs) + (1-alpha)/o.BulkModulus)
 }
 
-// Compressibility returns by what share oil with entrained air is compressed from atmospheric pressure to dp [Pa] above
-// it, over dp [1/Pa]: the inverse of its secant modulus,
+// Compression returns by what share of its volume oil with entrained air is compressed from atmospheric pressure to dp [Pa]
+// above it, odd in dp, and the slope by dp [1/Pa], > 0,
 //
-//	1/Bs = α/(|Δp| + p0) + (1 − α)/B        (10a)
+//	ε = Δp/Bs,  1/Bs = α/(|Δp| + p0) + (1 − α)/B        (10a)
 //
 // bulk is the modulus free of air [Pa], air the volume fraction α at atmospheric pressure p0. The gas follows Boyle's law.
 //
-// Source: Rabie, Fluid Power Engineering (2009), eq. 2.57 as printed, with n = 1.
-func Compressibility(dp, bulk, air float64) float64 {
-	return air/(math.Abs(dp)+units.AtmosphericPressure) + (1-air)/bulk
+// Source: Rabie, Fluid Power Engineering (2009), eq. 2.57 as printed, with n = 1, where it is the secant modulus.
+func Compression(dp, bulk, air float64) (share, slope float64) {
+	const p0 = units.AtmosphericPressure
+	p := math.Abs(dp) + p0
+	return dp * (air/p + (1-air)/bulk), air*p0/(p*p) + (1-air)/bulk
 }
