@@ -125,7 +125,7 @@ func (j *job) solve(ctx context.Context) error {
 			j.note("", []circuit.Finding{found})
 		}
 	}
-	if stopped := j.guard("", func() { j.note("", circuit.Check(r.Circuit, f.Axes, f.Duties)) }); stopped ||
+	if stopped := j.guard("", func() { j.note("", f.checkCircuit(r.Circuit)) }); stopped ||
 		circuit.AnyStops(r.Findings) {
 		j.progress.add(progressParts * len(f.Duties))
 		return nil

@@ -47,6 +47,9 @@ func (r *reader) oil(n, root *yaml.Node) {
 	if _, err := r.file.Conditions(); err != nil {
 		r.bad(scope{}, n, "", "%v", err)
 	}
+	if _, err := o.law(); err != nil && o.HasStart {
+		r.bad(s, f["start_temperature"].value, "start_temperature", "tells nothing while the viscosity is known at the working temperature only; give the grade too")
+	}
 }
 
 // gradeNumber finds the number of an ISO 3448 grade in "ISO VG 46", "VG46" or "46", and the class behind it if there is one:
