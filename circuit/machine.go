@@ -134,23 +134,13 @@ func (m *machine) bindMachine(b *binding, shafts []shaft) {
 	m.tc1 = m.law.Tc / m.tPer
 }
 
-// worn multiplies the slip by the wear, or makes it that of a measured case drain.
+// worn gives the law the slip of a worn machine.
 func (m *machine) worn(b *binding) {
-	w := b.get(m.wear, 1)
+	w := wear{factor: b.get(m.wear, 1), share: m.kc}
 	if m.drainQ >= 0 {
-		mu := b.cond.Viscosity
-		if m.drainT >= 0 {
-			mu = b.cond.ViscosityAt(b.p[m.drainT])
-		}
-		dp := b.p[m.drainP]
-		turbulent, _ := m.law.TurbulentSlip(dp, b.cond.Density)
-		if new := m.kc * (m.law.Cs*m.law.D*dp/mu + turbulent); new > 0 {
-			w = b.p[m.drainQ] / new
-		} else {
-			m.law = m.law.WithLeakage(b.p[m.drainQ]/m.kc, dp, mu)
-		}
+		w.drain, w.pressure, w.theta = b.p[m.drainQ], b.p[m.drainP], b.get(m.drainT, b.cond.Temperature)
 	}
-	m.law.Cs, m.law.Cst = w*m.law.Cs, w*m.law.Cst
+	m.law = w.of(m.law, &b.cond)
 }
 
 func (m *machine) evalMachine(e *eval) {

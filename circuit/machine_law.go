@@ -174,3 +174,50 @@ func hasValue(b *Block, key string) bool {
 	_, ok := b.Values[key]
 	return ok
 }
+
+// wear is what is known of a machine's wear: a factor, or, where drain > 0, a measured case drain.
+type wear struct{ factor, share, drain, pressure, theta float64 }
+
+// of multiplies the slip of a law by the factor, or makes it that of the measured drain.
+func (w wear) of(law machines.Displacement, oil *Conditions) machines.Displacement {
+	factor := w.factor
+	if w.drain > 0 {
+		mu := oil.ViscosityAt(w.theta)
+		turbulent, _ := law.TurbulentSlip(w.pressure, oil.Density)
+		if fresh := w.share * (law.Cs*law.D*w.pressure/mu + turbulent); fresh > 0 {
+			factor = w.drain / fresh
+		} else {
+			law, factor = law.WithLeakage(w.drain/w.share, w.pressure, mu), 1
+		}
+	}
+	law.Cs, law.Cst = factor*law.Cs, factor*law.Cst
+	return law
+}
+
+// MachineLaw returns the loss law of a displacement machine as it goes into the balance; ok is false for other blocks.
+func MachineLaw(b *Block, oil Conditions) (law machines.Displacement, ok bool) {
+	k := KindNamed(b.Kind)
+	if k == nil || k.derive == nil {
+		return law, false
+	}
+	get := func(key string) float64 { v, _, _ := k.Value(b, key); return v.SI }
+	law = machines.Displacement{D: get("displacement"), Cs: get("slip"), Cst: get("turbulent_slip"), K: get("compression"), Kd: get("dead_volume"),
+		Cf: get("friction"), Cv: get("viscous"), Ch: get("hydrodynamic"), Tc: get("drag")}
+	w := wear{factor: get("wear"), share: get("case_share"), drain: get("drain_flow"), pressure: get("drain_pressure"), theta: get("drain_temperature")}
+	if w.theta == 0 {
+		w.theta = oil.Temperature
+	}
+	return w.of(law, &oil), law.Check() == nil
+}
+
+// MachinePorts names outlet and inlet of a displacement machine that turns forwards as a pump, between which its pressure
+// difference lies; ok is false for other blocks.
+func MachinePorts(b *Block) (outlet, inlet string, ok bool) {
+	switch b.Kind {
+	case kindPump, kindChargePump:
+		return "P", "S", true
+	case kindHydraulicMotor:
+		return "A", "B", true
+	}
+	return "", "", false
+}
