@@ -1,6 +1,8 @@
 package audit
 
 import (
+	"fmt"
+
 	"gopkg.in/yaml.v3"
 
 	"barlitre/circuit"
@@ -32,6 +34,25 @@ func (r *reader) measured(s scope, b *circuit.Block, kind *circuit.Kind, n *yaml
 	if b.Fit, err = machines.FitPoints(got.Points, machines.FitOptions{D: full.SI, Fluid: fluid}); err != nil {
 		r.bad(s, n, "points", "%s: %v; give more points, or the coefficients", name, err)
 	}
+}
+
+// FitTable fits a loss law to a table of measured points: the text of a CSV file as recording.ReadTable and
+// machines.ReadPoints take it. name is for messages; full is the displacement at full setting [m³/rad], 0 for the largest
+// in the table, and comes back.
+func FitTable(name string, data []byte, full float64, oil machines.Fluid) (*machines.Measured, float64, *machines.Fit, error) {
+	table, faults := recording.ReadTable(name, data)
+	if table == nil {
+		return nil, full, nil, faults[0]
+	}
+	got, full, err := machines.ReadPoints(pointColumns(table), table.Lines, full)
+	if err != nil {
+		return nil, full, nil, fmt.Errorf("%s: %w", name, err)
+	}
+	f, err := machines.FitPoints(got.Points, machines.FitOptions{D: full, Fluid: oil})
+	if err != nil {
+		return nil, full, nil, fmt.Errorf("%s: %w; give more points", name, err)
+	}
+	return got, full, f, nil
 }
 
 // pointColumns hands a table over to the reader of measured points.

@@ -7,13 +7,11 @@ import (
 	"barlitre/audit/pen"
 )
 
-// MapPoint is a state in a map; its disc has an area by its weight.
-type MapPoint struct{ X, Y, Weight float64 }
-
-// Limit is a line that a machine should stay below, or above.
-type Limit struct {
-	Name string
-	At   float64 // NaN for none
+// MapPoint is a state in a map; its disc has an area by its weight. One that lies off the map, at another setting or speed,
+// is hollow.
+type MapPoint struct {
+	X, Y, Weight float64
+	Off          bool
 }
 
 // EfficiencyMap shows the efficiency of a machine over two quantities as contours, with the states it is in drawn on it.
@@ -24,15 +22,16 @@ type EfficiencyMap struct {
 	FromX, ToX, ToY  float64                    // in these units; Y begins at 0
 	At               func(x, y float64) float64 // efficiency 0…1, NaN where there is none
 	Points           []MapPoint
-	PointsAre        string // for the legend: "duty, area by energy"
-	LimitsX, LimitsY []Limit
+	PointsAre        string    // for the legend: "duty, area by energy"
+	OffAre           string    // "at another setting"
+	LimitsX, LimitsY []float64 // of the machine; NaN for none
 }
 
 const (
 	mapMinWidth  = 280.0
 	mapMinHeight = 220.0
 	mapHead      = 40.0 // title and subtitle
-	mapFoot      = 20.0 // legend below the axis
+	mapFoot      = 34.0 // legend below the axis, two lines
 	mapColumns   = 64   // cells of the grid
 	mapRows      = 48
 	mapDisc      = 13.0 // radius of the largest disc

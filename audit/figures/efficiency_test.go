@@ -83,7 +83,7 @@ func TestMapsFindRoom(t *testing.T) {
 	}
 	for _, v := range hostile { // nothing that is not a number breaks a picture
 		f := MapOverSpeed(m, 1, units.Metric)
-		f.ToX, f.Points = v, append(f.Points, MapPoint{v, v, v})
+		f.ToX, f.Points = v, append(f.Points, MapPoint{v, v, v, true})
 		f.Draw(pen.NewRecorder(), 400, 300, Light)
 		f.ToX, f.At = 100, func(x, y float64) float64 { return v }
 		rec := pen.NewRecorder()

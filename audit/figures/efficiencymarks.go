@@ -2,6 +2,8 @@ package figures
 
 import (
 	"math"
+	"slices"
+	"strings"
 
 	"barlitre/audit/pen"
 )
@@ -22,7 +24,11 @@ func (d *mapLayout) points() {
 		if len(d.Points) > 1 && d.alike() {
 			r = 2
 		}
-		d.p.Circle(pen.Pt{X: d.px(q.X), Y: d.py(q.Y)}, r, faded(d.pal.Heat, 110), pen.Stroke{W: 1, C: d.pal.Heat})
+		fill := faded(d.pal.Heat, 110)
+		if q.Off {
+			fill.A = 0
+		}
+		d.p.Circle(pen.Pt{X: d.px(q.X), Y: d.py(q.Y)}, r, fill, pen.Stroke{W: 1.2, C: d.pal.Heat})
 	}
 }
 
@@ -40,14 +46,14 @@ func (d *mapLayout) alike() bool {
 func (d *mapLayout) limits() {
 	st := pen.Stroke{W: 1.4, C: d.pal.Danger, Dash: dashes[1]}
 	for _, l := range d.LimitsX {
-		if l.At >= d.FromX && l.At <= d.ToX {
-			x := d.px(l.At)
+		if l >= d.FromX && l <= d.ToX {
+			x := d.px(l)
 			pen.Line(d.p, pen.Pt{X: x, Y: d.y}, pen.Pt{X: x, Y: d.y + d.h}, st)
 		}
 	}
 	for _, l := range d.LimitsY {
-		if l.At >= 0 && l.At <= d.ToY {
-			y := d.py(l.At)
+		if l >= 0 && l <= d.ToY {
+			y := d.py(l)
 			pen.Line(d.p, pen.Pt{X: d.x, Y: y}, pen.Pt{X: d.x + d.w, Y: y}, st)
 		}
 	}
@@ -71,16 +77,22 @@ func (d *mapLayout) frame() {
 // legend says what the axes and signs are.
 func (d *mapLayout) legend() {
 	y := d.y + d.h + axisHeight + 12
-	text := d.Y + inUnit(scaledUnit(thousands(d.ToY), d.YUnit)) + " over " + d.X + "; contours: overall efficiency in %"
+	line := func(text string) {
+		d.p.Text(pen.Pt{Y: y}, pen.Shorten(text, smallSize, false, d.x+d.w), smallSize, d.pal.Secondary, pen.Left, false)
+		y += smallSize + 3
+	}
+	line(d.Y + inUnit(scaledUnit(thousands(d.ToY), d.YUnit)) + " over " + d.X + "; contours: overall efficiency in %")
+	var signs []string
 	if len(d.Points) > 0 && d.PointsAre != "" {
-		text += "; ○ " + d.PointsAre
+		signs = append(signs, "discs: "+d.PointsAre)
 	}
-	for _, l := range append(append([]Limit(nil), d.LimitsX...), d.LimitsY...) {
-		if !math.IsNaN(l.At) {
-			text += "; – – " + l.Name
-		}
+	if slices.ContainsFunc(d.Points, func(q MapPoint) bool { return q.Off }) {
+		signs = append(signs, "hollow: "+d.OffAre)
 	}
-	d.p.Text(pen.Pt{Y: y}, pen.Shorten(text, smallSize, false, d.x+d.w), smallSize, d.pal.Secondary, pen.Left, false)
+	if slices.ContainsFunc(slices.Concat(d.LimitsX, d.LimitsY), finite) {
+		signs = append(signs, "dashes: its limits")
+	}
+	line(strings.Join(signs, "; "))
 }
 
 func inUnit(unit string) string {

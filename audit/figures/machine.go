@@ -8,6 +8,12 @@ import (
 	"barlitre/machines/units"
 )
 
+// States within these of the setting, or within this share of the speed, lie on the map.
+const (
+	sameSetting = 0.05
+	sameSpeed   = 0.05
+)
+
 // MapOverSpeed is the efficiency of a machine over speed and pressure at a setting, full when 0.
 func MapOverSpeed(m *audit.MachineMap, setting float64, s units.System) EfficiencyMap {
 	if setting <= 0 {
@@ -20,9 +26,11 @@ func MapOverSpeed(m *audit.MachineMap, setting float64, s units.System) Efficien
 	f.Subtitle = "at " + units.Format(setting, units.Percent, 3) + " setting, " + oilText(m, s)
 	f.X, f.XUnit, f.ToX = "speed", speed.Symbol, speed.FromSI(1.05*w)
 	f.At = func(x, y float64) float64 { return m.Efficiency(setting, speed.ToSI(x), pressure.ToSI(y)) }
-	f.LimitsX = []Limit{{"highest speed", speed.FromSI(m.MaxSpeed)}, {"lowest speed", speed.FromSI(m.MinSpeed)}}
+	f.LimitsX = []float64{speed.FromSI(m.MaxSpeed), speed.FromSI(m.MinSpeed)}
+	f.OffAre = "at another setting"
 	for _, x := range m.States {
-		f.Points = append(f.Points, MapPoint{speed.FromSI(math.Abs(x.W)), pressure.FromSI(math.Abs(x.DP)), x.Energy})
+		off := math.Abs(math.Abs(x.E)-setting) > sameSetting
+		f.Points = append(f.Points, MapPoint{speed.FromSI(math.Abs(x.W)), pressure.FromSI(math.Abs(x.DP)), x.Energy, off})
 	}
 	return f
 }
@@ -40,8 +48,10 @@ func MapOverSetting(m *audit.MachineMap, w float64, s units.System) EfficiencyMa
 	f.Subtitle = "at " + units.Format(w, speed, 4) + ", " + oilText(m, s)
 	f.X, f.XUnit, f.ToX = "setting", "%", 105
 	f.At = func(x, y float64) float64 { return m.Efficiency(x/100, w, pressure.ToSI(y)) }
+	f.OffAre = "at another speed"
 	for _, x := range m.States {
-		f.Points = append(f.Points, MapPoint{100 * math.Abs(x.E), pressure.FromSI(math.Abs(x.DP)), x.Energy})
+		off := math.Abs(math.Abs(x.W)-w) > sameSpeed*w
+		f.Points = append(f.Points, MapPoint{100 * math.Abs(x.E), pressure.FromSI(math.Abs(x.DP)), x.Energy, off})
 	}
 	return f
 }
@@ -49,7 +59,7 @@ func MapOverSetting(m *audit.MachineMap, w float64, s units.System) EfficiencyMa
 // mapOf begins a map with what both have.
 func mapOf(m *audit.MachineMap, pressure units.Unit, dp float64) EfficiencyMap {
 	f := EfficiencyMap{Y: "pressure difference", YUnit: pressure.Symbol, ToY: pressure.FromSI(1.05 * dp), PointsAre: "states of the duties, area by energy",
-		LimitsY: []Limit{{"rated pressure", pressure.FromSI(m.Rating)}}}
+		LimitsY: []float64{pressure.FromSI(m.Rating)}}
 	if m.Fit != nil && len(m.States) == len(m.Fit.Points) {
 		f.PointsAre = "measured points"
 	}
