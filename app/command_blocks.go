@@ -78,6 +78,8 @@ func printParam(w io.Writer, p *circuit.Param) {
 		facts = append(facts, strings.Join(p.Choices, " | "))
 	case circuit.AxisRef:
 		facts = append(facts, "name of an axis")
+	case circuit.FileRef:
+		facts = append(facts, "name of a file")
 	default:
 		facts = append(facts, units.Preferred(p.Dim, units.Metric).Label(), interval(p))
 	}

@@ -52,6 +52,7 @@ type DutyRun struct {
 	Peak        circuit.Peak
 	Shortfalls  []circuit.Shortfall
 	Plot        *Plot
+	Operating   map[string][]Operating // states of the displacement machines, by block
 }
 
 // Solve runs every circuit of the file over every duty and draws up the balances.
@@ -125,7 +126,7 @@ func (j *job) solve(ctx context.Context) error {
 			j.note("", []circuit.Finding{found})
 		}
 	}
-	if stopped := j.guard("", func() { j.note("", circuit.Check(r.Circuit, f.Axes, f.Duties)) }); stopped ||
+	if stopped := j.guard("", func() { j.note("", f.checkCircuit(r.Circuit)) }); stopped ||
 		circuit.AnyStops(r.Findings) {
 		j.progress.add(progressParts * len(f.Duties))
 		return nil
@@ -194,13 +195,14 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	ledger := NewLedger(c.Channels(), ShaftSignals(j.run.Circuit, c.Signals()), steps)
 	watch, plot := c.NewWatch(params, series), newRecorder(c.Signals(), c.Channels(), steps)
 	counter := &stepCounter{progress: j.progress, of: steps}
-	receivers := circuit.Receivers{ledger, watch, plot, counter}
+	operation := newOperation(j.run.Circuit, c.Signals())
+	receivers := circuit.Receivers{ledger, watch, plot, counter, operation}
 	if c.HasSlowStates() {
 		// Instants of switching add steps, and a period may be several cycles: the plot
 		// keeps the first of them whole.
 		plot = newRecorder(c.Signals(), c.Channels(), steps)
 		plot.plot.Thinned = false
-		receivers = circuit.Receivers{ledger, watch, &until{plot, series.T[steps-1]}}
+		receivers = circuit.Receivers{ledger, watch, &until{plot, series.T[steps-1]}, operation}
 	}
 	table, err := j.openTable(c, r, number)
 	if err != nil {
@@ -235,6 +237,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	r.Certificate, r.Plot = cert, plot.plot
 	r.Cycles = cycles
 	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls(cycles)
+	r.Operating = operation.all()
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())
 	return nil

@@ -57,6 +57,13 @@ const Format = "barlitre/1"
 //	oil: {grade: ISO VG 46, temperature: 50 C, viscosity_index: 100}
 //	oil: {grade: ISO VG 46, temperature: 50 C, viscosity_40: 46 mm2/s, viscosity_100: 6.8 mm2/s}
 //
+// "ISO VG 46 HV" stands for an oil whose viscosity changes less, of index 150 when none is given. Either way may add
+//
+//	specific_heat: 1.88 kJ/(kg K)      at 20 °C
+//	bulk_modulus: 1.4 GPa              free of air
+//	air: 1 %                           entrained, share of volume at atmospheric pressure; 0 when not given
+//	start_temperature: 0 C             of the oil when the machine starts, for a check of its viscosity
+//
 // Where both a viscosity and a grade are given, the viscosity and the density
 // hold at the working temperature, and the grade says how they change with it.
 //
@@ -85,6 +92,9 @@ const Format = "barlitre/1"
 // in a folder below it) whose head has the same names with their units: see
 // recording.ReadTable. A track is axis.speed, axis.position, axis.load,
 // axis.command, or block.command for a block that is commanded by itself.
+//
+// The measured points of a pump or motor stand in such a table too; its head may be written as the test bench does it, see
+// machines.ReadPoints. A block names it as points: pump.csv.
 //
 // A block is its kind, the parameters of that kind (see circuit.Catalog), and its
 // place on the sheet: at in modules, quarter turns, mirrored or not. Its id is
@@ -130,6 +140,8 @@ type Oil struct {
 	Grade                                                      string
 	Temperature, Density, Viscosity, Viscosity40, Viscosity100 circuit.Value // K, kg/m³, Pa·s, m²/s, m²/s
 	VI                                                         circuit.Value // viscosity index
+	SpecificHeat, BulkModulus, Air, Start                      circuit.Value // J/(kg·K) at 20 °C, Pa, share of volume, K
+	HasSpecificHeat, HasBulkModulus, HasAir, HasStart          bool
 	HasTemperature, HasDensity                                 bool
 	HasViscosity, HasViscosity40, HasViscosity100, HasVI       bool
 }

@@ -15,11 +15,20 @@ func (f *File) Check() []circuit.Finding {
 		unreadDuty[n.Duty] = n.Duty != ""
 	}
 	for _, e := range f.Circuits {
-		for _, n := range circuit.Check(e.Circuit, f.Axes, f.Duties) {
+		for _, n := range f.checkCircuit(e.Circuit) {
 			if !unread[spot{n.Circuit, n.Block, n.Parameter}] && !unreadDuty[n.Duty] {
 				out = append(out, n)
 			}
 		}
 	}
 	return out
+}
+
+// checkCircuit lists what is wrong with a circuit, its duties and its oil.
+func (f *File) checkCircuit(c *circuit.Circuit) []circuit.Finding {
+	found := circuit.Check(c, f.Axes, f.Duties)
+	if oil, err := f.Conditions(); err == nil && !circuit.AnyStops(found) {
+		found = append(found, circuit.CheckOil(c, oil)...)
+	}
+	return found
 }

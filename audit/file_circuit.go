@@ -208,6 +208,9 @@ func (r *reader) params(s scope, b *circuit.Block, kind *circuit.Kind, n *yaml.N
 			}
 		}
 	}
+	if e, ok := f["points"]; ok && kind.Param("points") != nil {
+		r.measured(s, b, kind, e.value)
+	}
 	b.At = r.at(s, f)
 	b.Turn = r.number(s, f, "turn", 0, 3)
 	b.Mirror = r.flag(s, f, "mirror", false)

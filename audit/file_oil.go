@@ -6,6 +6,7 @@ import (
 	"math"
 	"regexp"
 	"strconv"
+	"strings"
 
 	"gopkg.in/yaml.v3"
 
@@ -24,7 +25,8 @@ func (r *reader) oil(n, root *yaml.Node) {
 		return
 	}
 	before := len(r.found)
-	f := r.fields(scope{}, n, "oil", "grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100")
+	f := r.fields(scope{}, n, "oil", "grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100",
+		"specific_heat", "bulk_modulus", "air", "start_temperature")
 	o := &r.file.Oil
 	if e, ok := f["grade"]; ok {
 		o.Grade, _ = r.scalar(s, e.value, "grade", "a grade such as ISO VG 46")
@@ -35,16 +37,27 @@ func (r *reader) oil(n, root *yaml.Node) {
 	o.Viscosity40, o.HasViscosity40 = r.positive(s, f, "viscosity_40", units.KinematicViscosity)
 	o.Viscosity100, o.HasViscosity100 = r.positive(s, f, "viscosity_100", units.KinematicViscosity)
 	o.VI, o.HasVI = r.optional(s, f, "viscosity_index", units.Count)
+	o.SpecificHeat, o.HasSpecificHeat = r.positive(s, f, "specific_heat", units.SpecificHeat)
+	o.BulkModulus, o.HasBulkModulus = r.positive(s, f, "bulk_modulus", units.Pressure)
+	o.Air, o.HasAir = r.optional(s, f, "air", units.Ratio)
+	o.Start, o.HasStart = r.positive(s, f, "start_temperature", units.Temperature)
 	if len(r.found) > before {
 		return // the rest would only repeat it
 	}
 	if _, err := r.file.Conditions(); err != nil {
 		r.bad(scope{}, n, "", "%v", err)
 	}
+	if _, err := o.law(); err != nil && o.HasStart {
+		r.bad(s, f["start_temperature"].value, "start_temperature", "tells nothing while the viscosity is known at the working temperature only; give the grade too")
+	}
 }
 
-// gradeNumber finds the number of an ISO 3448 grade in "ISO VG 46", "VG46" or "46".
-var gradeNumber = regexp.MustCompile(`(?i)^(?:(?:ISO[ -]?)?VG[ -]?)?(\d{1,5})$`)
+// gradeNumber finds the number of an ISO 3448 grade in "ISO VG 46", "VG46" or "46", and the class behind it if there is one:
+// HM, a plain mineral oil, or HV, one whose viscosity changes less.
+var gradeNumber = regexp.MustCompile(`(?i)^(?:(?:ISO[ -]?)?VG[ -]?)?(\d{1,5})(?: (HM|HV))?$`)
+
+// highIndex is the viscosity index of a generic HV oil: assumed, common practice for fresh ones 140 to 160.
+const highIndex = 150
 
 // law returns how the oil changes with temperature, from its grade or its
 // viscosities at 40 and 100 °C; the error says what is missing.
@@ -62,8 +75,13 @@ func (o *Oil) law() (machines.Oil, error) {
 		if oil, err = machines.NewOilOfGrade(vg); err != nil {
 			return oil, fmt.Errorf("oil: %w", err)
 		}
+		if strings.EqualFold(m[2], "HV") {
+			if oil.Nu100, err = machines.NuAt100(oil.Nu40, highIndex); err != nil {
+				return oil, fmt.Errorf("oil: %w", err)
+			}
+		}
 	case o.Grade != "":
-		return oil, fmt.Errorf("oil: grade %q is not an ISO VG grade; write one such as ISO VG 46, or give viscosity_40 and viscosity_100", o.Grade)
+		return oil, fmt.Errorf("oil: grade %q is not an ISO VG grade; write one such as ISO VG 46 or ISO VG 46 HV, or give viscosity_40 and viscosity_100", o.Grade)
 	default:
 		return oil, errors.New("oil: give a grade such as ISO VG 46, or the viscosity at the working temperature")
 	}
@@ -80,7 +98,22 @@ func (o *Oil) law() (machines.Oil, error) {
 	if o.HasDensity && !o.HasViscosity {
 		oil.Density15 = o.Density.SI
 	}
+	oil = o.compressible(oil)
 	return oil, oil.Check()
+}
+
+// compressible gives an oil what the file says of its heat, compression and air.
+func (o *Oil) compressible(oil machines.Oil) machines.Oil {
+	if o.HasSpecificHeat {
+		oil.SpecificHeat = o.SpecificHeat.SI
+	}
+	if o.HasBulkModulus {
+		oil.BulkModulus = o.BulkModulus.SI
+	}
+	if o.HasAir {
+		oil.Air = o.Air.SI
+	}
+	return oil
 }
 
 // ErrOneTemperature is returned where the oil is known at its working
@@ -102,14 +135,27 @@ func (f *File) Conditions() (circuit.Conditions, error) {
 func (f *File) ConditionsAt(theta float64) (circuit.Conditions, error) {
 	o := &f.Oil
 	law, lawErr := o.law()
+	c := circuit.Conditions{Temperature: theta}
+	plain := o.compressible(machines.NewOil(2e-6, 1e-6)) // what does not hang on the viscosity
+	if err := plain.Check(); err != nil {
+		return c, err
+	}
+	c.BulkModulus, c.Air = plain.BulkModulus, plain.Air
+	if lawErr == nil {
+		c.Oil = law
+		if o.HasStart {
+			c.Start = o.Start.SI
+		}
+	}
 	if !o.HasViscosity {
 		if lawErr != nil {
-			return circuit.Conditions{}, lawErr
+			return c, lawErr
 		}
-		return finite(circuit.Conditions{Density: law.Density(theta), Viscosity: law.DynamicViscosity(theta)}, theta)
+		c.Density, c.Viscosity = law.Density(theta), law.DynamicViscosity(theta)
+		return finite(c, theta)
 	}
 	at := o.Temperature.SI
-	c := circuit.Conditions{Density: o.Density.SI, Viscosity: o.Viscosity.SI}
+	c.Density, c.Viscosity = o.Density.SI, o.Viscosity.SI
 	if !o.HasDensity {
 		if lawErr != nil {
 			return c, errors.New("oil: the density at the working temperature is missing; write density: 870 kg/m3")

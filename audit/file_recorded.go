@@ -16,15 +16,7 @@ import (
 
 // recorded reads the rows from a file beside the audit file.
 func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node) Source {
-	name, ok := r.scalar(s, n, "file", "the name of a CSV file")
-	if !ok {
-		return Source{}
-	}
-	if strings.Contains(name, `\`) || !filepath.IsLocal(filepath.FromSlash(name)) {
-		r.bad(s, n, "file", "%q must lie beside the audit file or in a folder below it; write folder/name.csv", name)
-		return Source{}
-	}
-	table := r.table(s, n, name)
+	table, name := r.beside(s, n, "file")
 	if table == nil {
 		return Source{}
 	}
@@ -53,14 +45,27 @@ func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node) Source {
 	return Source{File: name, SHA256: table.SHA256}
 }
 
+// beside reads the table that a key names, beside the audit file.
+func (r *reader) beside(s scope, n *yaml.Node, key string) (table *recording.Table, name string) {
+	name, ok := r.scalar(s, n, key, "the name of a CSV file")
+	if !ok {
+		return nil, name
+	}
+	if strings.Contains(name, `\`) || !filepath.IsLocal(filepath.FromSlash(name)) {
+		r.bad(s, n, key, "%q must lie beside the audit file or in a folder below it; write folder/name.csv", name)
+		return nil, name
+	}
+	return r.table(s, n, key, name), name
+}
+
 // table reads a recording, once.
-func (r *reader) table(s scope, n *yaml.Node, name string) *recording.Table {
+func (r *reader) table(s scope, n *yaml.Node, key, name string) *recording.Table {
 	f := r.file
 	if t := f.tables[name]; t != nil {
 		return t
 	}
 	if f.open == nil {
-		r.bad(s, n, "file", "%s cannot be read: the audit has no folder yet; save it first", name)
+		r.bad(s, n, key, "%s cannot be read: the audit has no folder yet; save it first", name)
 		return nil
 	}
 	data, err := f.open(name)
@@ -68,12 +73,12 @@ func (r *reader) table(s scope, n *yaml.Node, name string) *recording.Table {
 		if pe := (*fs.PathError)(nil); errors.As(err, &pe) {
 			err = pe.Err // its path is that of this computer
 		}
-		r.bad(s, n, "file", "%s cannot be read: %v; put the recording beside the audit file", name, err)
+		r.bad(s, n, key, "%s cannot be read: %v; put it beside the audit file", name, err)
 		return nil
 	}
 	t, faults := recording.ReadTable(name, data)
 	for _, fault := range faults {
-		r.bad(s, n, "file", "%v", fault)
+		r.bad(s, n, key, "%v", fault)
 	}
 	if t != nil {
 		f.tables[name] = t

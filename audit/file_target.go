@@ -19,7 +19,7 @@ var attributes = []string{"origin", "low", "high", "note"}
 // sections are the parts of a file that Set reaches besides circuits, with their keys.
 var sections = map[string][]string{
 	"site":   {"name", "customer", "author", "date", "note", "currency"},
-	"oil":    {"grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100"},
+	"oil":    {"grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100", "specific_heat", "bulk_modulus", "air", "start_temperature"},
 	"air":    {"temperature"},
 	"energy": {"price", "co2", "co2_year", "co2_basis", "credit_returned"},
 }

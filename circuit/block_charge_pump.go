@@ -22,6 +22,8 @@ var chargePumpKind = &Kind{
 	Equations: append(machineEquations, Equation{"relief: q = 0 for p − pT <= pc, else p − pT = pc + R·q", "linear override"}),
 	Rating:    "rating",
 	Symbol:    func(*Block) string { return "charge_set" },
+	derive:    deriveMachine,
+	check:     checkMachine,
 	build: func(k *compiler, b *Block) model {
 		m := &chargeModel{}
 		m.machine = k.machine(b, "P", "S", k.shaftAt(b), k.fixed())

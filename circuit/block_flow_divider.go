@@ -49,8 +49,9 @@ func buildFlowDivider(k *compiler, b *Block) model {
 	s := &k.shafts[shaft]
 	m := &flowDividerModel{k: k.Compiled, ratio: k.param(b, "ratio"), setting: k.fixed(), qP: k.port(b, "P")}
 	m.a = machine{P: k.node(b, "P"), D: k.air, e: m.setting, shaft: shaft, speed: s.speed, sigma: s.sigma, row: s.row, free: true,
-		disp: k.param(b, "displacement"), cs: k.param(b, "slip"), cf: k.param(b, "friction"), cv: k.param(b, "viscous"), tc: k.param(b, "drag"), share: -1,
+		disp: k.param(b, "displacement"), coef: k.coefficients(b), wear: -1, share: -1, drainQ: -1,
 		qP: -1, qD: -1, sigT: -1, sigP: -1, sigE: -1, slip: k.channel(Loss, b, "slip"), rub: k.channel(Loss, b, "friction")}
+	m.a.turb, m.a.comp, m.a.inert = m.a.slip, m.a.slip, m.a.rub
 	s.sizes = append(s.sizes, m.a.disp)
 	m.b = m.a
 	m.a.S, m.a.qS = k.node(b, "A"), k.port(b, "A")

@@ -21,13 +21,16 @@ var hydraulicMotorKind = &Kind{
 		Param{Key: "axis", Title: "Axis", Type: AxisRef, Text: "axis of the duty that it drives"},
 		Param{Key: "hold", Title: "Held by", Type: Choice, Choices: []string{"valve", "pump", "brake"}, Text: "what holds the axis at standstill"},
 		Param{Key: "gear", Title: "Gear ratio", Symbol: "i", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "direct drive", Above: true, Max: 1e4, Text: "motor speed over axis speed"},
+		Param{Key: "starting_torque", Title: "Starting torque", Symbol: "τ0", Dim: units.Ratio, Default: "0.8", Origin: Assumed, Source: "piston motor, common practice, no source", Above: true, Max: 1, Text: "at standstill, over the ideal torque D·Δp; the motor must break away with it"},
 		Param{Key: "gear_efficiency", Title: "Gear efficiency", Symbol: "ηg", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "no gear", Above: true, Max: 1, Text: "of the gear, both ways"},
 	),
 	Losses:    append([]LossKind{{"gearbox", ToAir, "P = |T|/i·(1 − ηg)/ηg·|ω|"}}, machineLosses...),
 	Equations: append(machineEquations, Equation{"D·Δp = T/i + friction + |T|/i·(1 − ηg)/ηg·sign ω", "torque balance of the shaft; gear loss opposes motion both ways, our choice"}),
 	Rating:    "rating",
 	Symbol:    func(*Block) string { return "motor_fixed_2" },
+	derive:    deriveMachine,
 	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
+		checkMachine(k, b, bad)
 		if b.Word("axis") != "" && b.Word("hold") == "" {
 			bad(Stops, "hold", "say what holds the axis at standstill: hold: valve, pump or brake")
 		}

@@ -58,7 +58,9 @@ var pumpKind = &Kind{
 		}
 		return "pump_fixed_1"
 	},
+	derive: deriveMachine,
 	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
+		checkMachine(k, b, bad)
 		control := k.WordOf(b, "control")
 		if follows(b) != "" && b.Word("control") != "" {
 			bad(Stops, "control", "it follows an axis and has a control of its own; keep one of `follows` and `control`")

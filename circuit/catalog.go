@@ -37,6 +37,7 @@ const (
 	Number  ParamType = iota // a quantity with a unit
 	Choice                   // one of Choices
 	AxisRef                  // the name of an axis
+	FileRef                  // the name of a file beside the audit file
 )
 
 // Param is a parameter of a kind of block.
@@ -93,6 +94,8 @@ type Kind struct {
 	Rating    string // key of the parameter that limits its pressure, if any
 	// Symbol returns the name of its drawing symbol; see also SymbolOf.
 	Symbol func(b *Block) string
+	// derive gives what a block has for a number that is not given, where that follows from others.
+	derive func(k *Kind, b *Block, key string) (Value, bool)
 	// check adds what only this kind can say of a block.
 	check func(k *Kind, b *Block, bad func(level Level, param, format string, args ...any))
 	// build makes the model of a block; nil for blocks that only join or fix nodes.

@@ -1,5 +1,7 @@
 package circuit
 
+import "barlitre/machines"
+
 // Circuit is a drawing: blocks, and the lines that join their ports.
 type Circuit struct {
 	Name       string
@@ -26,6 +28,7 @@ type Block struct {
 	Kind   string
 	Values map[string]Value // numbers, by parameter key
 	Words  map[string]Word  // choices and references, by parameter key
+	Fit    *machines.Fit    // of the measured points it names, or nil
 	At     *[2]float64      // place on the sheet, modules
 	Turn   int              // quarter turns
 	Mirror bool
@@ -62,11 +65,16 @@ func (c *Circuit) Block(id string) *Block {
 	return nil
 }
 
-// Value returns what block b has for a parameter: the number given, else the
-// default of its kind (ok = true for both), else ok = false.
+// Value returns what block b has for a parameter: the number given, else what
+// follows from others that are given, else the default of its kind (ok = true for both), else ok = false.
 func (k *Kind) Value(b *Block, key string) (v Value, isDefault, ok bool) {
 	if v, found := b.Values[key]; found {
 		return v, false, true
+	}
+	if k.derive != nil {
+		if v, ok := k.derive(k, b, key); ok {
+			return v, true, true
+		}
 	}
 	if p := k.Param(key); p != nil && p.Default != "" {
 		return p.defaultValue, true, true

@@ -16,59 +16,67 @@ type machine struct {
 	row          slot // torque balance of a free shaft
 	shaft        int
 	free         bool
-	disp         int // parameters
-	cs, cf, cv   int
-	tc, share    int
+	disp         int                       // parameters
+	coef         [len(coefficientKeys)]int // in the order of coefficientKeys; −1 = 0
+	wear, share  int                       // −1 = 1 and 0
+	drainQ       int                       // measured case drain: flow, pressure, temperature
+	drainP       int
+	drainT       int
 	qP, qS, qD   int // signals
 	sigW, sigT   int
 	sigP, sigE   int
 	slip, rub    int // channels
+	turb, comp   int // those of the slip where the machine has no such term
+	inert        int // that of the friction
 
 	part       float64 // of the parameters' displacement and drag that this section has; 0 = all
 	law        machines.Displacement
 	d          float64 // displacement over that of the shaft's largest machine: flow per scaled speed
 	across     float64 // slip conductance P to S, scaled
 	drain      float64 // and of each port to the case
+	kc         float64 // share of the slip that leaves by the case
 	visc, tc1  float64 // scaled friction terms
 	cf1        float64
 	wPer, tPer float64 // rad/s and N·m of one scaled unit
+	oil        Conditions
+	scale      scales
 }
 
-// machineParams are the parameters that every displacement machine has.
-func machineParams(share string) []Param {
-	return []Param{
-		{Key: "displacement", Title: "Displacement", Symbol: "V", Dim: units.DisplacementPerRev, Need: true, Above: true, Max: 0.02, Text: "geometric, at full setting"},
-		{Key: "slip", Title: "Slip coefficient", Symbol: "Cs", Dim: units.Ratio, Default: "1.5e-8", Origin: Assumed, Source: "piston machine in good order, common practice", Max: 1e-4, Text: "laminar leakage, of displacement, pressure and 1/viscosity"},
-		{Key: "friction", Title: "Pressure friction", Symbol: "Cf", Dim: units.Ratio, Default: "0.03", Origin: Assumed, Source: "piston machine in good order, common practice", Max: 0.9, Text: "share of the ideal torque at full displacement"},
-		{Key: "viscous", Title: "Viscous friction", Symbol: "Cv", Dim: units.Ratio, Default: "6.5e4", Origin: Assumed, Source: "piston machine in good order, common practice", Max: 1e8, Text: "torque by displacement, viscosity and speed"},
-		{Key: "drag", Title: "Constant friction", Symbol: "Tc", Dim: units.Torque, Default: "1.5 N m", Origin: Assumed, Source: "seals and bearings, common practice", Max: 1e4, Text: "torque that does not depend on pressure or speed"},
-		{Key: "case_share", Title: "Slip to the case", Symbol: "kc", Dim: units.Ratio, Default: share, Origin: Assumed, Source: "share of the slip that leaves by the case drain, common practice", Max: 1, Text: "the rest slips from port to port; an open drain goes to tank"},
-		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
-		{Key: "max_speed", Title: "Highest speed", Symbol: "n2", Dim: units.AngularSpeed, Above: true, Max: 2000, Text: "highest permitted speed"},
-		{Key: "min_speed", Title: "Lowest speed", Symbol: "n1", Dim: units.AngularSpeed, Max: 2000, Text: "lowest permitted speed while it carries pressure"},
+// coefficientKeys are the parameters of the loss law.
+var coefficientKeys = [...]string{"slip", "turbulent_slip", "compression", "dead_volume", "friction", "viscous", "hydrodynamic", "drag"}
+
+// coefficients finds the parameters of the loss law of a block.
+func (k *compiler) coefficients(b *Block) (at [len(coefficientKeys)]int) {
+	for i, key := range coefficientKeys {
+		at[i] = -1
+		if KindNamed(b.Kind).Param(key) != nil {
+			at[i] = k.param(b, key)
+		}
 	}
-}
-
-var machineLosses = []LossKind{
-	{"slip", ToOil, "P = Σ k·Δp² over the leakage paths, k = Cs·D/μ"},
-	{"friction", ToOil, "P = (Cf·D·|Δp| + Cv·D·μ·|ω| + Tc)·|ω|"},
-}
-
-var machineEquations = []Equation{
-	{"q = e·D·ω − Cs·D·Δp/μ, D = V/2π", "Wilson, Rotary-pump theory, Trans. ASME 68 (1946); slip split between port to port and port to case"},
-	{"T = e·D·Δp + (Cf·D·|Δp| + Cv·D·μ·|ω| + Tc)·sign ω", "Wilson 1946, with full D in the friction terms"},
+	return at
 }
 
 // machine wires the common part; P and S are the port names of outlet and inlet.
 func (k *compiler) machine(b *Block, P, S string, shaft int, e slot) machine {
 	s := &k.shafts[shaft]
 	m := machine{P: k.node(b, P), S: k.node(b, S), D: k.node(b, "D"), e: e, shaft: shaft, speed: s.speed, sigma: s.sigma, row: s.row, free: s.free,
-		disp: k.param(b, "displacement"), cs: k.param(b, "slip"), cf: k.param(b, "friction"), cv: k.param(b, "viscous"),
-		tc: k.param(b, "drag"), share: k.param(b, "case_share"),
+		disp: k.param(b, "displacement"), coef: k.coefficients(b), wear: k.param(b, "wear"), share: k.param(b, "case_share"),
+		drainQ: k.param(b, "drain_flow"), drainP: k.param(b, "drain_pressure"), drainT: k.param(b, "drain_temperature"),
 		qP: k.port(b, P), qS: k.port(b, S), qD: k.port(b, "D"),
 		sigW: k.signal(b, "w", "speed", units.AngularSpeed), sigT: k.signal(b, "T", "shaft torque", units.Torque),
 		sigP: k.signal(b, "shaft", "shaft power", units.Power), sigE: k.signal(b, "e", "setting", units.Ratio),
 		slip: k.channel(Loss, b, "slip"), rub: k.channel(Loss, b, "friction"),
+	}
+	m.turb, m.comp, m.inert = m.slip, m.slip, m.rub
+	has := func(key string) bool { v, _, _ := KindNamed(b.Kind).Value(b, key); return v.SI > 0 }
+	if has("turbulent_slip") {
+		m.turb = k.channel(Loss, b, "turbulent slip")
+	}
+	if has("compression") || has("dead_volume") {
+		m.comp = k.channel(Loss, b, "compression")
+	}
+	if has("hydrodynamic") {
+		m.inert = k.channel(Loss, b, "hydrodynamic torque")
 	}
 	s.sizes = append(s.sizes, m.disp)
 	return m
@@ -110,17 +118,29 @@ func (m *machine) bindMachine(b *binding, shafts []shaft) {
 		part = 1
 	}
 	D := part * b.p[m.disp]
-	m.law = machines.Displacement{D: D, Cs: b.p[m.cs], Cf: b.p[m.cf], Cv: b.p[m.cv], Tc: part * b.p[m.tc]}
+	c := func(i int) float64 { return b.get(m.coef[i], 0) }
+	m.kc = b.get(m.share, 0)
+	m.law = machines.Displacement{D: D, Cs: c(0), Cst: c(1), K: c(2), Kd: c(3), Cf: c(4), Cv: c(5), Ch: c(6), Tc: part * c(7)}
+	m.oil, m.scale = b.cond, b.scales
+	m.worn(b)
 	size := shafts[m.shaft].size(b.p)
 	m.wPer = b.scales.q / size
 	m.tPer = size * b.scales.p
 	m.d = D / size
 	k := m.law.Cs * D / b.cond.Viscosity * b.scales.p / b.scales.q
-	share := b.get(m.share, 0)
-	m.across, m.drain = k*(1-share), k*share
+	m.across, m.drain = k*(1-m.kc), k*m.kc
 	m.cf1 = m.law.Cf * m.d
 	m.visc = m.law.Cv * D * b.cond.Viscosity * m.wPer / m.tPer
 	m.tc1 = m.law.Tc / m.tPer
+}
+
+// worn gives the law the slip of a worn machine.
+func (m *machine) worn(b *binding) {
+	w := wear{factor: b.get(m.wear, 1), share: m.kc}
+	if m.drainQ >= 0 {
+		w.drain, w.pressure, w.theta = b.p[m.drainQ], b.p[m.drainP], b.get(m.drainT, b.cond.Temperature)
+	}
+	m.law = w.of(m.law, &b.cond)
 }
 
 func (m *machine) evalMachine(e *eval) {
@@ -139,8 +159,55 @@ func (m *machine) evalMachine(e *eval) {
 		e.conduct(m.P, m.D, m.drain)
 		e.conduct(m.S, m.D, m.drain)
 	}
+	if m.law.Cst > 0 {
+		m.evalTurbulent(e, m.P, m.S, 1-m.kc)
+		m.evalTurbulent(e, m.P, m.D, m.kc)
+		m.evalTurbulent(e, m.S, m.D, m.kc)
+	}
+	if m.law.K > 0 || m.law.Kd > 0 {
+		m.evalCompression(e)
+	}
 	if m.free { // the torque row of the shaft sums them
 		m.addTorque(e, m.row, 1, m.torque(e))
+	}
+}
+
+// turbulent is a share of the turbulent slip from a to b and its slope, scaled.
+func (m *machine) turbulent(dp, share float64) (q, slope float64) {
+	q, slope = m.law.TurbulentSlip(dp*m.scale.p, m.oil.Density)
+	return share * q / m.scale.q, share * slope * m.scale.p / m.scale.q
+}
+
+func (m *machine) evalTurbulent(e *eval, a, b slot, share float64) {
+	if share == 0 {
+		return
+	}
+	q, k := m.turbulent(e.val(a)-e.val(b), share)
+	e.add(a, q)
+	e.d(a, a, k)
+	e.d(a, b, -k)
+	e.add(b, -q)
+	e.d(b, a, -k)
+	e.d(b, b, k)
+}
+
+// compression is the flow lost to compression from P to S and its slopes by drop, setting and speed, scaled.
+func (m *machine) compression(set, w, dp float64) (q, byDP, byE, byW float64) {
+	q, byDP, byE, byW = m.law.CompressionFlow(set, w*m.wPer, dp*m.scale.p, m.oil.bulk(), m.oil.Air)
+	return q / m.scale.q, byDP * m.scale.p / m.scale.q, byE / m.scale.q, byW * m.wPer / m.scale.q
+}
+
+func (m *machine) evalCompression(e *eval) {
+	q, k, byE, byW := m.compression(e.val(m.e), e.val(m.speed), e.val(m.P)-e.val(m.S))
+	for _, side := range [...]struct {
+		row  slot
+		sign float64
+	}{{m.P, 1}, {m.S, -1}} {
+		e.add(side.row, side.sign*q)
+		e.d(side.row, m.P, side.sign*k)
+		e.d(side.row, m.S, -side.sign*k)
+		e.d(side.row, m.e, side.sign*byE)
+		e.d(side.row, m.speed, side.sign*byW)
 	}
 }
 
@@ -155,7 +222,14 @@ func (m *machine) torque(e *eval) torque {
 		sg = e.val(m.sigma)
 	}
 	dry, slope := m.cf1*math.Abs(dp)+m.tc1, m.cf1*sign(dp)
-	return torque{set*m.d*dp + sg*dry + m.visc*w, m.d * dp, m.visc, set*m.d + sg*slope, dry}
+	t := torque{set*m.d*dp + sg*dry + m.visc*w, m.d * dp, m.visc, set*m.d + sg*slope, dry}
+	if m.law.Ch > 0 {
+		T, byE, byW := m.law.InertialTorque(set, w*m.wPer, m.oil.Density)
+		t.need += T / m.tPer
+		t.e += byE / m.tPer
+		t.w += byW * m.wPer / m.tPer
+	}
+	return t
 }
 
 // addTorque adds k times a torque of the machine to a row.
@@ -174,21 +248,31 @@ func (m *machine) addTorque(e *eval, row slot, k float64, t torque) {
 func (m *machine) bookMachine(k *booking) {
 	set, ws := k.val(m.e), k.val(m.speed)
 	w := ws * m.wPer
-	pP, pS, pD := k.val(m.P), k.val(m.S), k.val(m.D)
+	pP, pS := k.val(m.P), k.val(m.S)
 	q := set * ws * m.d
-	a, dP, dS := m.across*(pP-pS), m.drain*(pP-pD), m.drain*(pS-pD)
-	k.put(m.qP, k.m3s(-q+a+dP))
-	k.put(m.qS, k.m3s(q-a+dS))
+	flow := func(a, b slot, share, laminar float64) float64 { // along a path of slip, booked
+		dp := k.val(a) - k.val(b)
+		t, _ := m.turbulent(dp, share)
+		k.lose(m.slip, k.watts(laminar*dp*dp))
+		k.lose(m.turb, k.watts(t*dp))
+		return laminar*dp + t
+	}
+	a, dP, dS := flow(m.P, m.S, 1-m.kc, m.across), flow(m.P, m.D, m.kc, m.drain), flow(m.S, m.D, m.kc, m.drain)
+	c, _, _, _ := m.compression(set, ws, pP-pS)
+	k.lose(m.comp, k.watts(c*(pP-pS)))
+	k.put(m.qP, k.m3s(-q+a+c+dP))
+	k.put(m.qS, k.m3s(q-a-c+dS))
 	k.put(m.qD, k.m3s(-dP-dS))
-	k.pow[m.slip] += k.watts(a*(pP-pS) + dP*(pP-pD) + dS*(pS-pD))
 	dp := (pP - pS) * k.scales.p
 	dir := sign(w)
 	if m.free {
 		dir = k.val(m.sigma)
 	}
 	friction := (m.law.Cf*m.law.D*math.Abs(dp)+m.law.Tc)*dir + m.law.Cv*m.law.D*k.cond.Viscosity*w
-	T := set*m.law.D*dp + friction
-	k.pow[m.rub] += friction * w
+	inertial, _, _ := m.law.InertialTorque(set, w, k.cond.Density)
+	T := set*m.law.D*dp + friction + inertial
+	k.lose(m.rub, friction*w)
+	k.lose(m.inert, inertial*w)
 	k.put(m.sigW, w)
 	k.put(m.sigT, T)
 	k.put(m.sigP, T*w)

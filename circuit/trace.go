@@ -1,6 +1,9 @@
 package circuit
 
-import "barlitre/machines/units"
+import (
+	"barlitre/machines"
+	"barlitre/machines/units"
+)
 
 // Role says on which side of the energy balance a channel stands.
 type Role int
@@ -81,8 +84,41 @@ func (ss Receivers) Sample(s *Sample) error {
 
 // Conditions hold for a whole call of Run: the oil at its temperature.
 type Conditions struct {
-	Density   float64 // kg/m³
-	Viscosity float64 // dynamic, Pa·s
+	Density     float64 // kg/m³
+	Viscosity   float64 // dynamic, Pa·s
+	BulkModulus float64 // of oil without air, Pa; 0 = machines.DefaultBulkModulus
+	Air         float64 // entrained, share of volume at atmospheric pressure
+	Temperature float64 // K, at which these hold; 0 = not known
+	Start       float64 // K, of the oil when the machine starts; 0 = not known
+	// Oil says how they change with temperature; its zero value when that is not known.
+	Oil machines.Oil
+}
+
+// bulk returns the modulus without air [Pa].
+func (c *Conditions) bulk() float64 {
+	if c.BulkModulus == 0 {
+		return machines.DefaultBulkModulus
+	}
+	return c.BulkModulus
+}
+
+// changes reports whether the oil is known at other temperatures than its own.
+func (c *Conditions) changes() bool { return c.Oil.Nu40 > 0 && c.Temperature > 0 }
+
+// ViscosityAt returns the dynamic viscosity [Pa·s] at temperature theta [K]; at any where only one is known, that one.
+func (c *Conditions) ViscosityAt(theta float64) float64 {
+	if !c.changes() {
+		return c.Viscosity
+	}
+	return c.Viscosity * c.Oil.DynamicViscosity(theta) / c.Oil.DynamicViscosity(c.Temperature)
+}
+
+// densityAt returns the density [kg/m³] at temperature theta [K], as ViscosityAt.
+func (c *Conditions) densityAt(theta float64) float64 {
+	if !c.changes() {
+		return c.Density
+	}
+	return c.Density * c.Oil.Density(theta) / c.Oil.Density(c.Temperature)
 }
 
 // Certificate says how well the time steps of a run are balanced.

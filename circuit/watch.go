@@ -27,6 +27,7 @@ type Watch struct {
 	span   float64
 	mach   []machineWatch
 	drives []driveWatch
+	breaks []breakWatch
 }
 
 // extreme is the range of a signal and when it was reached.
@@ -100,7 +101,11 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 		}
 		return -1
 	}
+	_, nets := netsOf(c.circuit)
 	for _, b := range sorted(c.circuit.Blocks) {
+		if b.Kind == kindHydraulicMotor {
+			w.breakaway(b, nets)
+		}
 		w.drive(b, get(b.ID+".w"), get(b.ID+".T"))
 		switch b.Kind {
 		case kindElectricMotor:
@@ -199,6 +204,9 @@ func (w *Watch) Sample(s *Sample) error {
 	}
 	for i := range w.drives {
 		w.drives[i].take(s, dt)
+	}
+	for i := range w.breaks {
+		w.breaks[i].take(s)
 	}
 	for i, q := range s.Void {
 		v := &w.voids[i]

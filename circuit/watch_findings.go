@@ -21,6 +21,7 @@ func (w *Watch) Findings() []Finding {
 	w.speeds(f)
 	w.torques(f)
 	w.drivesHeld(f)
+	w.breakaways(f)
 	w.motions(f)
 	w.reliefs(f)
 	w.accumulators(f)

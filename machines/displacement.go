@@ -18,7 +18,8 @@ type Displacement struct {
 
 	Cst float64 // turbulent slip (Schloesser), –, >= 0; default 0
 	Ch  float64 // torque growing with speed squared, –, >= 0; default 0
-	K   float64 // compression flow, –, >= 0; default 0
+	K   float64 // compression of the swept volume, –, >= 0; default 0
+	Kd  float64 // compression of the dead volume, over displacement, –, >= 0; default 0
 }
 
 // turbulentSlipTransition [Pa] rounds the square root of the turbulent slip off near zero, where its
@@ -42,7 +43,7 @@ func (m Displacement) Check() error {
 		name string
 		v    float64
 	}{{"slip Cs", m.Cs}, {"pressure friction Cf", m.Cf}, {"viscous friction Cv", m.Cv}, {"constant torque Tc", m.Tc},
-		{"turbulent slip Cst", m.Cst}, {"speed-squared torque Ch", m.Ch}, {"compression K", m.K}} {
+		{"turbulent slip Cst", m.Cst}, {"speed-squared torque Ch", m.Ch}, {"compression K", m.K}, {"dead volume Kd", m.Kd}} {
 		if !notNegative(c.v) {
 			return fmt.Errorf("coefficient of %s is %s, must be 0 or above", c.name, units.Number(c.v, 3))
 		}
@@ -52,37 +53,50 @@ func (m Displacement) Check() error {
 
 // Slip returns the flow lost inside the machine [m³/s], with the sign of dp,
 //
-//	Qs = Cs·D·Δp/μ + Cst·D^(2/3)·√(2|Δp|/ρ)·sign(Δp) + K·|e|·D·|ω|·Δp/B        (1)
+//	Qs = Cs·D·Δp/μ + Cst·D^(2/3)·√(2|Δp|/ρ)·sign(Δp) + (K·|e| + Kd)·D·|ω|·Δp/B        (1)
 //
 // e is the setting (−1..1), w the speed [rad/s], dp outlet minus inlet [Pa], mu the dynamic
 // viscosity [Pa·s], rho the density [kg/m³], bulk the bulk modulus [Pa], all > 0; rho and bulk are
-// not used while Cst and K are 0. Below about 0.1 bar the root is rounded off to a finite slope.
-// It never fails.
+// not used while Cst, K and Kd are 0. Dead volume is compressed every turn, whatever the setting. Of oil with air bulk is the secant modulus Δp/ε of Compression.
+// Below about 0.1 bar the root is rounded off to a finite slope. It never fails.
 //
 // Source: Wilson (1950), first term; Schloesser, second; Pourmovahed, Beachley and Fronczak,
-// ASME J. Dyn. Sys. Meas. Contr. 114 (1992), third.
+// ASME J. Dyn. Sys. Meas. Contr. 114 (1992), third with K = 1; Kd is our addition.
 func (m Displacement) Slip(e, w, dp, mu, rho, bulk float64) float64 {
-	q := m.Cs * m.D * dp / mu
-	if m.Cst != 0 {
-		q += m.Cst * math.Cbrt(m.D*m.D) * math.Sqrt(2/rho) * dp / math.Sqrt(math.Hypot(dp, turbulentSlipTransition))
-	}
-	if m.K != 0 {
-		q += m.K * math.Abs(e) * m.D * math.Abs(w) * dp / bulk
-	}
-	return q
+	turbulent, _ := m.TurbulentSlip(dp, rho)
+	return m.Cs*m.D*dp/mu + turbulent + m.compressed(e, w)*dp/bulk
 }
 
 // SlipSlope returns dQs/dΔp of equation (1) [m³/(s·Pa)], >= 0, finite at dp = 0.
 func (m Displacement) SlipSlope(e, w, dp, mu, rho, bulk float64) float64 {
-	g := m.Cs * m.D / mu
-	if m.Cst != 0 {
-		h := math.Hypot(dp, turbulentSlipTransition)
-		g += m.Cst * math.Cbrt(m.D*m.D) * math.Sqrt(2/rho) * (1 - dp*dp/(2*h*h)) / math.Sqrt(h)
+	_, turbulent := m.TurbulentSlip(dp, rho)
+	return m.Cs*m.D/mu + turbulent + m.compressed(e, w)/bulk
+}
+
+// TurbulentSlip returns the second term of equation (1) [m³/s] and its slope by dp [m³/(s·Pa)].
+func (m Displacement) TurbulentSlip(dp, rho float64) (q, slope float64) {
+	if m.Cst == 0 {
+		return 0, 0
 	}
-	if m.K != 0 {
-		g += m.K * math.Abs(e) * m.D * math.Abs(w) / bulk
+	h := math.Hypot(dp, turbulentSlipTransition)
+	c := m.Cst * math.Cbrt(m.D*m.D) * math.Sqrt(2/(rho*h))
+	return c * dp, c * (1 - dp*dp/(2*h*h))
+}
+
+// compressed is the flow whose compression is lost [m³/s].
+func (m Displacement) compressed(e, w float64) float64 {
+	return (m.K*math.Abs(e) + m.Kd) * m.D * math.Abs(w)
+}
+
+// CompressionFlow returns the third term of equation (1) [m³/s] for oil with bulk modulus bulk [Pa] and air (see
+// Compression), and its slopes by dp, e and w.
+func (m Displacement) CompressionFlow(e, w, dp, bulk, air float64) (q, byDP, byE, byW float64) {
+	if m.K == 0 && m.Kd == 0 {
+		return 0, 0, 0, 0
 	}
-	return g
+	share, slope := Compression(dp, bulk, air)
+	c := m.compressed(e, w)
+	return c * share, c * slope, m.K * m.D * sign(e) * math.Abs(w) * share, m.D * (m.K*math.Abs(e) + m.Kd) * sign(w) * share
 }
 
 // Flow returns the flow Q [m³/s] leaving the outlet port,
@@ -103,11 +117,18 @@ func (m Displacement) Flow(e, w, dp, mu, rho, bulk float64) float64 {
 //
 // Source: Wilson (1950); the Ch term is Schloesser's.
 func (m Displacement) FrictionTorque(e, w, dp, mu, rho float64) float64 {
-	t := m.Cf*m.D*math.Abs(dp) + m.Cv*m.D*mu*math.Abs(w) + m.Tc
-	if m.Ch != 0 {
-		t += m.Ch * math.Abs(e) * rho * w * w * m.D * math.Cbrt(m.D*m.D) / 2
-	}
-	return t
+	return m.Cf*m.D*math.Abs(dp) + m.Cv*m.D*mu*math.Abs(w) + m.Tc + m.inertial(rho)*math.Abs(e)*w*w
+}
+
+// inertial is the factor of |e|·ω² in equation (3) [N·m·s²].
+func (m Displacement) inertial(rho float64) float64 {
+	return m.Ch * rho * m.D * math.Cbrt(m.D*m.D) / 2
+}
+
+// InertialTorque returns the third term of equation (3) [N·m] with the sign of w, and its slopes by e and w.
+func (m Displacement) InertialTorque(e, w, rho float64) (t, byE, byW float64) {
+	k := m.inertial(rho)
+	return k * math.Abs(e) * w * math.Abs(w), k * sign(e) * w * math.Abs(w), 2 * k * math.Abs(e*w)
 }
 
 // Torque returns the torque T [N·m] the shaft must be given,

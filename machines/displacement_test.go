@@ -195,7 +195,7 @@ func TestEnergyIdentity(t *testing.T) {
 	pick := func(limit float64) float64 { return limit * (2*rnd.Float64() - 1) }
 	for range 20000 {
 		m := Displacement{D: rnd.Float64()*200*cm3 + cm3, Cs: rnd.Float64() * 1e-7, Cf: rnd.Float64() * 0.1, Cv: rnd.Float64() * 2e5,
-			Tc: rnd.Float64() * 10, Cst: rnd.Float64() * 1e-5, Ch: rnd.Float64() * 60, K: rnd.Float64() * 3}
+			Tc: rnd.Float64() * 10, Cst: rnd.Float64() * 1e-5, Ch: rnd.Float64() * 60, K: rnd.Float64() * 3, Kd: rnd.Float64() * 3}
 		e, w, dp := pick(1), pick(400), pick(4e7)
 		mu, rho, bulk := 0.005+rnd.Float64(), 800+100*rnd.Float64(), 1e9+1e9*rnd.Float64()
 		slip, friction := m.SlipLoss(e, w, dp, mu, rho, bulk), m.FrictionLoss(e, w, dp, mu, rho)
@@ -222,10 +222,35 @@ func TestEnergyIdentity(t *testing.T) {
 }
 
 func TestSlipSlope(t *testing.T) {
-	m := Displacement{D: 50 * cm3, Cs: 1e-8, Cst: 1e-5, K: 2}
+	m := Displacement{D: 50 * cm3, Cs: 1e-8, Cst: 1e-5, K: 2, Kd: 1}
 	for _, dp := range []float64{-2e7, -3e4, 0, 5e3, 1e4, 1e6, 3e7} {
 		f := func(p float64) float64 { return m.Slip(0.7, 150, p, oilMu, oilRho, oilBulk) }
 		expectSlope(t, "slip", f, m.SlipSlope(0.7, 150, dp, oilMu, oilRho, oilBulk), dp, 10, 1e-6)
+	}
+}
+
+// Analytic slopes of the terms that the balance takes one by one, in four quadrants.
+func TestTermSlopes(t *testing.T) {
+	m := Displacement{D: 50 * cm3, Cst: 1e-5, K: 0.7, Kd: 1.4, Ch: 50}
+	for _, s := range [][3]float64{{0.7, 150, 2e7}, {0.7, -150, 2e7}, {-0.4, 150, -3e6}, {-0.4, -30, 5e3}} {
+		e, w, dp := s[0], s[1], s[2]
+		q, byDP, byE, byW := m.CompressionFlow(e, w, dp, oilBulk, 0.02)
+		if q*dp < 0 {
+			t.Errorf("compression makes energy at %v", s)
+		}
+		flow := func(e, w, dp float64) float64 { q, _, _, _ := m.CompressionFlow(e, w, dp, oilBulk, 0.02); return q }
+		expectSlope(t, "compression by dp", func(x float64) float64 { return flow(e, w, x) }, byDP, dp, 10, 1e-5)
+		expectSlope(t, "compression by e", func(x float64) float64 { return flow(x, w, dp) }, byE, e, 1e-3, 1e-5)
+		expectSlope(t, "compression by w", func(x float64) float64 { return flow(e, x, dp) }, byW, w, 1e-3, 1e-5)
+		_, byDP = m.TurbulentSlip(dp, oilRho)
+		expectSlope(t, "turbulent slip", func(x float64) float64 { q, _ := m.TurbulentSlip(x, oilRho); return q }, byDP, dp, 10, 1e-5)
+		torque := func(e, w float64) float64 { T, _, _ := m.InertialTorque(e, w, oilRho); return T }
+		T, byE, byW := m.InertialTorque(e, w, oilRho)
+		if T*w < 0 {
+			t.Errorf("inertial torque makes energy at %v", s)
+		}
+		expectSlope(t, "inertial torque by e", func(x float64) float64 { return torque(x, w) }, byE, e, 1e-3, 1e-5)
+		expectSlope(t, "inertial torque by w", func(x float64) float64 { return torque(e, x) }, byW, w, 1e-3, 1e-5)
 	}
 }
 

@@ -33,7 +33,7 @@
 // # Sources
 //
 // Wilson (1950) for slip and friction, Schloesser for the turbulent and inertial terms,
-// ISO 4409 for efficiencies, IEC 60034-30-1 for motor classes, ASTM D341, ASTM D2270 and ISO 2909, ISO 3448
+// ISO 4409 for efficiencies, IEC 60034-30-1 for motor classes, ASTM D341, ASTM D2270, ISO 3448
 // for oil, Darcy-Weisbach, Hagen-Poiseuille and Colebrook for lines. Values without
 // a published source say "assumed, common practice" or "from memory" beside them.
 //

@@ -54,3 +54,10 @@ func (f Family) Displacement(d float64) (Displacement, error) {
 	}
 	return FromEfficiency(d, f.EtaV, f.EtaHM, f.DP, f.Speed, f.Mu)
 }
+
+// BestPoint writes the point the coefficients of the family come from.
+func (f Family) BestPoint() string {
+	show := func(x float64, d units.Dim) string { return units.Format(x, units.Preferred(d, units.Metric), 3) }
+	return fmt.Sprintf("%s volumetric and %s hydromechanical at %s, %s and %s", units.Format(f.EtaV, units.Percent, 3), units.Format(f.EtaHM, units.Percent, 3),
+		show(f.DP, units.Pressure), show(f.Speed, units.AngularSpeed), show(f.Mu, units.DynamicViscosity))
+}

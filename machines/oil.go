@@ -8,18 +8,20 @@ import (
 	"barlitre/machines/units"
 )
 
-// Temperatures of the two reference viscosities and of the reference density [K].
+// Temperatures of the two reference viscosities, of the reference density and of the specific heat [K].
 const (
 	theta40  = units.ZeroCelsius + 40
 	theta100 = units.ZeroCelsius + 100
 	theta15  = units.ZeroCelsius + 15
+	theta20  = units.ZeroCelsius + 20
 )
 
 // Defaults of a plain mineral oil.
 const (
 	DefaultDensity15    = 870.0  // kg/m³, handbook value, from memory
 	DefaultExpansion    = 7e-4   // 1/K; handbooks give 6.5e-4 to 7e-4, from memory
-	DefaultSpecificHeat = 1880.0 // J/(kg·K); textbooks print 1760 to 2060
+	DefaultSpecificHeat = 1880.0 // J/(kg·K) at 20 °C; textbooks print 1760 to 2060
+	DefaultHeatSlope    = 1.9e-3 // 1/K, its growth; Cragoe, NBS Misc. Publ. 97 (1929), from memory
 	DefaultBulkModulus  = 1.4e9  // Pa, free of air; assumed, common practice (1.2e9 to 1.8e9)
 )
 
@@ -27,15 +29,17 @@ const (
 type Oil struct {
 	Density15    float64 // at 15 °C, kg/m³, > 0
 	Nu40, Nu100  float64 // kinematic viscosity at 40 and 100 °C, m²/s, Nu40 > Nu100 > 0
-	SpecificHeat float64 // J/(kg·K), > 0
+	SpecificHeat float64 // at 20 °C, J/(kg·K), > 0
+	HeatSlope    float64 // growth of the specific heat, 1/K, >= 0
 	Expansion    float64 // of volume, 1/K, >= 0
-	BulkModulus  float64 // Pa, > 0
+	BulkModulus  float64 // free of air, Pa, > 0
+	Air          float64 // entrained, share of volume at atmospheric pressure, 0..0.3; default 0
 }
 
 // NewOil returns an oil with the two kinematic viscosities [m²/s] and the default other properties.
 func NewOil(nu40, nu100 float64) Oil {
 	return Oil{Density15: DefaultDensity15, Nu40: nu40, Nu100: nu100, SpecificHeat: DefaultSpecificHeat,
-		Expansion: DefaultExpansion, BulkModulus: DefaultBulkModulus}
+		HeatSlope: DefaultHeatSlope, Expansion: DefaultExpansion, BulkModulus: DefaultBulkModulus}
 }
 
 // NewOilByIndex returns an oil with the kinematic viscosity at 40 °C [m²/s] and the viscosity
@@ -90,6 +94,10 @@ func (o Oil) Check() error {
 		return fmt.Errorf("oil: specific heat is %s J/(kg K), must be above 0", units.Number(o.SpecificHeat, 4))
 	case !(o.Expansion >= 0 && o.Expansion < 2e-3):
 		return fmt.Errorf("oil: thermal expansion is %s 1/K, must be 0 to 0.002 1/K", units.Number(o.Expansion, 3))
+	case !(o.HeatSlope >= 0 && o.HeatSlope < 0.01):
+		return fmt.Errorf("oil: growth of the specific heat is %s 1/K, must be 0 to 0.01 1/K", units.Number(o.HeatSlope, 3))
+	case !(o.Air >= 0 && o.Air <= 0.3):
+		return fmt.Errorf("oil: air content is %s %%, must be 0 to 30 %%", units.Number(100*o.Air, 3))
 	case !positive(o.BulkModulus):
 		return fmt.Errorf("oil: bulk modulus is %s MPa, must be above 0", units.Number(o.BulkModulus/units.Megapascal, 3))
 	}
@@ -132,10 +140,15 @@ func (o Oil) DynamicViscosity(theta float64) float64 {
 	return o.KinematicViscosity(theta) * o.Density(theta)
 }
 
+// Heat returns the specific heat [J/(kg·K)] at temperature theta [K], cp20·(1 + s·(θ − 20 °C)).
+func (o Oil) Heat(theta float64) float64 {
+	return o.SpecificHeat * (1 + o.HeatSlope*(theta-theta20))
+}
+
 // ThrottlingRise returns by how much oil at theta [K] warms [K] when a pressure drop dp [Pa] turns
 // into heat, Δp/(ρ·cp): 5.5 to 6.7 K per 100 bar.
 func (o Oil) ThrottlingRise(dp, theta float64) float64 {
-	return dp / (o.Density(theta) * o.SpecificHeat)
+	return dp / (o.Density(theta) * o.Heat(theta))
 }
 
 // EffectiveBulkModulus returns B [Pa] of oil with entrained air at absolute pressure pAbs [Pa] > 0,
@@ -149,4 +162,18 @@ func (o Oil) ThrottlingRise(dp, theta float64) float64 {
 func (o Oil) EffectiveBulkModulus(pAbs, air, n float64) float64 {
 	alpha := air * math.Pow(units.AtmosphericPressure/pAbs, 1/n)
 	return 1 / (alpha/(n*pAbs) + (1-alpha)/o.BulkModulus)
+}
+
+// Compression returns by what share of its volume oil with entrained air is compressed from atmospheric pressure to dp [Pa]
+// above it, odd in dp, and the slope by dp [1/Pa], > 0,
+//
+//	ε = Δp/Bs,  1/Bs = α/(|Δp| + p0) + (1 − α)/B        (10a)
+//
+// bulk is the modulus free of air [Pa], air the volume fraction α at atmospheric pressure p0. The gas follows Boyle's law.
+//
+// Source: Rabie, Fluid Power Engineering (2009), eq. 2.57 as printed, with n = 1, where it is the secant modulus.
+func Compression(dp, bulk, air float64) (share, slope float64) {
+	const p0 = units.AtmosphericPressure
+	p := math.Abs(dp) + p0
+	return dp * (air/p + (1-air)/bulk), air*p0/(p*p) + (1-air)/bulk
 }

@@ -67,43 +67,44 @@ func TestWalther(t *testing.T) {
 	}
 }
 
-// ASTM D2270: printed rows of its table, and the L column also read elsewhere. The equations stand in for the table: 0.1 %.
+// ASTM D2270: printed rows of its table, read in another place than the table in the program; to the printed digit.
 func TestIndexReference(t *testing.T) {
 	for _, c := range []struct{ y, l, h float64 }{
 		{4.0, 25.32, 19.56}, {5.0, 40.23, 28.49}, {5.1, 41.99, 29.46}, {5.4, 47.31, 32.37}, {6.5, 67.12, 43.18}, {6.8, 73.48, 46.44},
 		{7.8, 95.43, 57.31}, {8.7, 116.2, 67.64}, {8.8, 118.5, 68.79}, {8.9, 120.9, 69.94}, {11.2, 179.4, 97.71}, {20.0, 493.2, 229.5},
 	} {
 		l, h := indexReference(c.y)
-		expect(t, fmt.Sprintf("L(%v)", c.y), l, c.l, 1e-3)
-		expect(t, fmt.Sprintf("H(%v)", c.y), h, c.h, 1e-3)
+		expectAbs(t, fmt.Sprintf("L(%v)", c.y), l, c.l, 1e-9)
+		expectAbs(t, fmt.Sprintf("H(%v)", c.y), h, c.h, 1e-9)
 	}
-	for y, want := range map[float64]float64{2: 7.994, 2.5: 11.45, 3: 15.49, 3.5: 20.09, 4.4: 30.48, 6: 57.97, 7: 78, 8: 100, 9: 123.3, 10: 147.7, 12: 201.9, 13: 231.9, 14: 263.3} {
-		l, _ := indexReference(y)
-		expect(t, fmt.Sprintf("L(%v)", y), l, want, 1e-3)
+	// The equations above 70 are the standard's own; they leave its last row, 4905 and 1558, by 0.023 %.
+	l, h := indexReference(70)
+	l1, h1 := indexReference(70 + 1e-9)
+	expect(t, "L at 70", l1, l, 3e-4)
+	expect(t, "H at 70", h1, h, 3e-4)
+	// A slip of the pen in a table shows in its second differences: they never reach 1.5 % of the value.
+	for _, s := range indexTable {
+		for i := 1; i+1 < len(s.rows); i++ {
+			for k := range 2 {
+				if d := s.rows[i+1][k] - 2*s.rows[i][k] + s.rows[i-1][k]; math.Abs(d) > 0.015*s.rows[i][k] || s.rows[i][k] <= s.rows[i-1][k] {
+					t.Errorf("row Y = %.1f: %v does not lie between its neighbours", s.from+float64(i)*s.step, s.rows[i])
+				}
+			}
+		}
 	}
-	// The row above 70 is the standard's own; the row below it, at its end, must lead into it.
-	l1, h1 := indexReference(70 - 1e-9)
-	l2, h2 := indexReference(70)
-	expect(t, "L at 70", l1, l2, 1e-3)
-	expect(t, "H at 70", h1, h2, 1e-3)
 }
 
-// Examples of ASTM D2270. With L and H interpolated in the printed table the unrounded values are
-// 92.4296, 156.4235, 92.0333.
+// Examples of ASTM D2270: printed to the integer; unrounded by an independent calculation from the two neighbouring rows
+// of the printed table.
 func TestViscosityIndex(t *testing.T) {
-	for _, c := range []struct{ u, y, want, unrounded, l0, l1, h0, h1 float64 }{
-		{73.30, 8.86, 92, 92.4296, 118.5, 120.9, 68.79, 69.94},
-		{22.83, 5.05, 156, 156.4235, 40.23, 41.99, 28.49, 29.46},
-		{73.5, 8.86, 92, 92.0333, 118.5, 120.9, 68.79, 69.94},
+	for _, c := range []struct{ u, y, want, unrounded float64 }{
+		{73.30, 8.86, 92, 92.4296472}, {22.83, 5.05, 156, 156.4234829}, {73.5, 8.86, 92, 92.0332937},
 	} {
 		index, err := ViscosityIndex(c.u*mm2, c.y*mm2)
 		if err != nil || math.Round(index) != c.want {
 			t.Errorf("%v/%v: index %v, %v; the standard prints %v", c.u, c.y, index, err, c.want)
 		}
-		part := math.Mod(c.y*10, 1)
-		table := indexOf(c.u, c.y, c.l0+part*(c.l1-c.l0), c.h0+part*(c.h1-c.h0))
-		expectAbs(t, fmt.Sprintf("%v/%v by the table", c.u, c.y), table, c.unrounded, 5.1e-5)
-		expectAbs(t, fmt.Sprintf("%v/%v by the equations", c.u, c.y), index, c.unrounded, 0.3)
+		expectAbs(t, fmt.Sprintf("%v/%v unrounded", c.u, c.y), index, c.unrounded, 1e-6)
 	}
 }
 
@@ -141,17 +142,56 @@ func TestDensityAndHeat(t *testing.T) {
 	// Kelvin per 100 bar, independent calculation for the density and specific heat of four sources.
 	for _, c := range []struct{ rho, cp, want float64 }{{870, 2060, 5.58}, {870, 1880, 6.11}, {895, 1800, 6.21}, {850, 1758, 6.69}} {
 		o := oil
-		o.Density15, o.SpecificHeat = c.rho, c.cp
+		o.Density15, o.SpecificHeat, o.HeatSlope = c.rho, c.cp, 0 // one value, whatever the temperature
 		expect(t, "rise per 100 bar", o.ThrottlingRise(100*units.Bar, celsius(15)), c.want, 1e-3)
 	}
 	// Esposito 11.3: 50 C, 70 bar, 895 kg/m³, 1.8 kJ/kgK gives 54.3 C, exactly 54.345; 11.2: 120 F over 1000 psi gives
 	// 127.9 F with 0.42 Btu/lbF and SG 0.895 (56 lb/ft³).
 	o := oil
-	o.Density15, o.SpecificHeat, o.Expansion = 895, 1800, 0
+	o.Density15, o.SpecificHeat, o.HeatSlope, o.Expansion = 895, 1800, 0, 0
 	expectAbs(t, "Esposito 11.3", 50+o.ThrottlingRise(70*units.Bar, celsius(50)), 54.345, 0.001)
 	o.SpecificHeat = 0.42 * 4186.8
 	expectAbs(t, "Esposito 11.2, F", 120+1.8*o.ThrottlingRise(1000*units.PSI, celsius(50)), 127.9, 0.2)
 }
+
+// Specific heat: Rabie, Fluid Power Engineering, p. 45 prints 2060 J/(kg K) at 50 C, textbooks 1758 to 2060; the default
+// rises from 1880 at 20 C by Cragoe's slope (NBS Misc. Publ. 97, from memory) and must lie within 4 % of the first.
+func TestSpecificHeat(t *testing.T) {
+	oil := NewOil(46*mm2, 6.8*mm2)
+	expect(t, "20 C", oil.Heat(celsius(20)), 1880, 1e-12)
+	expect(t, "50 C", oil.Heat(celsius(50)), 2060, 0.04)
+	// Cragoe with specific gravity 0.87: (1.685 + 0.00339 t)/sqrt(0.87) kJ/(kg K), from memory.
+	for _, c := range []float64{0, 20, 50, 80} {
+		expect(t, fmt.Sprintf("%v C by Cragoe", c), oil.Heat(celsius(c)), 1e3*(1.685+0.00339*c)/math.Sqrt(0.87), 2e-3)
+	}
+}
+
+// Rabie eq. 2.57 as printed (the gas does not shrink) with 1 % air, n = 1, B = 1400 MPa, independent calculation:
+// 93.4, 369, 586, 828 MPa at 10, 50, 100, 200 bar absolute. With n = 1 that is the secant modulus from the atmosphere
+// up: the compression of the mixture is Δp over it.
+func TestSecantModulus(t *testing.T) {
+	oil := NewOil(46*mm2, 6.8*mm2)
+	for bar, want := range map[float64]float64{10: 93.4, 50: 369, 100: 586, 200: 828} {
+		dp := bar*1e5 - units.AtmosphericPressure
+		share, _ := Compression(dp, oil.BulkModulus, 0.01)
+		expect(t, fmt.Sprintf("%v bar abs", bar), dp/share/1e6, want, 5e-3)
+	}
+	for _, dp := range []float64{1e5, 1e6, 3e7} { // by the volumes: gas by Boyle, oil by its modulus
+		p0 := units.AtmosphericPressure
+		after := 0.01*p0/(p0+dp) + 0.99*(1-dp/oil.BulkModulus)
+		share, slope := Compression(dp, oil.BulkModulus, 0.01)
+		expect(t, "compression of 1 % air", share, 1-after, 1e-12)
+		f := func(p float64) float64 { s, _ := Compression(p, oil.BulkModulus, 0.01); return s }
+		expectSlope(t, "compression", f, slope, dp, 1, 1e-6)
+	}
+	// Esposito 2.11: 10 in³, 100 to 2000 psi, 250,000 psi: -0.076 in³; 2.17: 687 to 13,740 kPa, 1718 MPa: 0.76 %;
+	// Sullivan 6.2: 1000 psi, 350,000 psi: 0.0029.
+	expect(t, "Esposito 2.11", 10*first(Compression(1900*units.PSI, 250e3*units.PSI, 0)), 0.076, 5e-3)
+	expect(t, "Esposito 2.17", first(Compression(13053e3, 1718e6, 0)), 0.0076, 5e-3)
+	expect(t, "Sullivan 6.2", first(Compression(1000*units.PSI, 350e3*units.PSI, 0)), 0.0029, 0.02)
+}
+
+func first(a, _ float64) float64 { return a }
 
 // Independent calculation, Rabie eq. 2.57 with shrinking gas, 1 % air, n = 1, B = 1400 MPa; it took 1 bar for
 // the atmosphere, hence 1 % tolerance. The first value leaves out the low end, where that matters most.

@@ -68,6 +68,9 @@ func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
 		return newNumberRow(p, circuitName, block, q, target)
 	}
 	options := q.Choices
+	if b := p.block(circuitName, block); q.Type == circuit.FileRef && b != nil && b.Word(q.Key) != "" {
+		options = []string{b.Word(q.Key)}
+	}
 	if q.Type == circuit.AxisRef {
 		options = nil
 		for _, a := range p.s.ctx.Doc().File().Axes {

@@ -1,0 +1,119 @@
+package audit
+
+import (
+	"cmp"
+	"math"
+	"slices"
+
+	"barlitre/circuit"
+	"barlitre/machines/units"
+)
+
+// Operating is a state that a displacement machine was in, and how much passed its shaft there.
+type Operating struct {
+	W, E, DP float64 // rad/s, setting, Pa (outlet minus inlet)
+	Seconds  float64
+	Energy   float64 // J, |shaft power| over that time
+}
+
+// operation is the circuit.Receiver that sums up the states of the machines of a circuit, those alike together.
+type operation struct {
+	machines []operated
+	t        float64
+	begun    bool
+}
+
+type operated struct {
+	block             string
+	w, e, p, s, shaft int // signals
+	last              Operating
+	power             float64
+	states            map[[3]int]*Operating
+}
+
+// Steps of states that count as alike.
+const (
+	alikeSpeed    = 20 * units.RPM
+	alikeSetting  = 0.02
+	alikePressure = 2 * units.Bar
+)
+
+func newOperation(c *circuit.Circuit, signals []circuit.Signal) *operation {
+	at := map[string]int{}
+	for i, s := range signals {
+		at[s.Name] = i
+	}
+	o := &operation{}
+	for i := range c.Blocks {
+		b := &c.Blocks[i]
+		p, s, ok := circuit.MachinePorts(b)
+		w, turns := at[b.ID+".w"]
+		if !ok || !turns {
+			continue
+		}
+		find := func(name string) int { // a port that is on no line has no pressure
+			if i, ok := at[b.ID+"."+name]; ok {
+				return i
+			}
+			return -1
+		}
+		o.machines = append(o.machines, operated{block: b.ID, w: w, e: find("e"), p: find(p + ".p"), s: find(s + ".p"), shaft: find("shaft"), states: map[[3]int]*Operating{}})
+	}
+	return o
+}
+
+// Sample books half an interval to the state before and half to this one.
+func (o *operation) Sample(s *circuit.Sample) error {
+	dt := s.T - o.t
+	for i := range o.machines {
+		m := &o.machines[i]
+		get := func(k int) float64 {
+			if k < 0 {
+				return 0
+			}
+			return s.Signals[k]
+		}
+		now := Operating{W: get(m.w), E: get(m.e), DP: get(m.p) - get(m.s)}
+		power := math.Abs(get(m.shaft))
+		if o.begun && dt > 0 {
+			m.book(m.last, m.power, dt/2)
+			m.book(now, power, dt/2)
+		}
+		m.last, m.power = now, power
+	}
+	o.t, o.begun = s.T, true
+	return nil
+}
+
+// book adds to the states alike; their mean is weighted by energy.
+func (m *operated) book(x Operating, power, dt float64) {
+	key := [3]int{int(math.Round(x.W / alikeSpeed)), int(math.Round(x.E / alikeSetting)), int(math.Round(x.DP / alikePressure))}
+	at := m.states[key]
+	if at == nil {
+		at = &Operating{W: x.W, E: x.E, DP: x.DP}
+		m.states[key] = at
+	}
+	e := power * dt
+	if sum := at.Energy + e; sum > 0 {
+		k := e / sum
+		at.W, at.E, at.DP = at.W+k*(x.W-at.W), at.E+k*(x.E-at.E), at.DP+k*(x.DP-at.DP)
+	}
+	at.Seconds += dt
+	at.Energy += e
+}
+
+// all lists the states by machine, those with most energy first.
+func (o *operation) all() map[string][]Operating {
+	out := map[string][]Operating{}
+	for _, m := range o.machines {
+		var list []Operating
+		for _, s := range m.states {
+			list = append(list, *s)
+		}
+		slices.SortFunc(list, func(a, b Operating) int {
+			return cmp.Or(cmp.Compare(b.Energy, a.Energy), cmp.Compare(a.W, b.W), cmp.Compare(a.DP, b.DP), cmp.Compare(a.E, b.E))
+		})
+		out[m.block] = list
+	}
+	return out
+}
