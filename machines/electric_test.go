@@ -5,58 +5,12 @@ import (
 	"math"
 	"math/rand"
 	"slices"
-	"strings"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
 
 	"barlitre/machines/units"
 )
-
-// The table of IEC 60034-30-1 and its interpolation formula were remembered independently of each other; the table is
-// printed to 0.1 %, so half a digit is what can be asked.
-func TestClassTableAgainstFormula(t *testing.T) {
-	for class, row := range classTable {
-		for i, kW := range classRatings {
-			expectAbs(t, fmt.Sprintf("%s %v kW", class, kW), classFormula(row.formula, kW), row.eta[i], 0.0501)
-		}
-	}
-}
-
-func TestEfficiencyClass(t *testing.T) {
-	for _, c := range []struct {
-		class     string
-		kW, eta   float64
-		published bool // read in print, otherwise from memory
-	}{
-		{"IE1", 7.5, 86.0, true}, {"IE1", 11, 87.6, true}, {"IE2", 7.5, 88.7, true}, {"IE2", 11, 89.8, true}, {"IE2", 15, 90.6, true},
-		{"IE3", 7.5, 90.4, true}, {"IE4", 11, 93.3, true},
-		{"ie3", 22, 93.0, false}, {"IE3", 30, 93.6, false}, {"IE3", 11, 91.4, false}, {"IE4", 110, 96.3, false},
-	} {
-		eta, origin, err := EfficiencyClass(c.class, c.kW, 4)
-		if err != nil || strings.Contains(origin, "published") != c.published {
-			t.Errorf("%s %v kW: origin %q, %v", c.class, c.kW, origin, err)
-		}
-		expectAbs(t, fmt.Sprintf("%s %v kW", c.class, c.kW), 100*eta, c.eta, 1e-9)
-	}
-	// Ends of the formula's range, from memory of the standard's table: IE3 82.5 % at 0.75 kW, 96.0 % at 200 kW.
-	for kW, want := range map[float64]float64{0.75: 82.5, 200: 96.0} {
-		eta, origin, err := EfficiencyClass("IE3", kW, 4)
-		if err != nil || !strings.Contains(origin, "formula") {
-			t.Errorf("%v kW: %q, %v", kW, origin, err)
-		}
-		expectAbs(t, "IE3 by formula", 100*eta, want, 0.05)
-	}
-	for _, c := range []struct {
-		class string
-		kW    float64
-		poles int
-	}{{"IE5", 11, 4}, {"", 11, 4}, {"IE3", 11, 2}, {"IE3", 0.5, 4}, {"IE3", 250, 4}, {"IE3", math.NaN(), 4}} {
-		if _, _, err := EfficiencyClass(c.class, c.kW, c.poles); err == nil || !strings.Contains(err.Error(), "name-plate") {
-			t.Errorf("%+v: error %v must ask for the name-plate efficiency", c, err)
-		}
-	}
-}
 
 func ie3Motor22() InductionMotor {
 	return InductionMotor{RatedPower: 22e3, RatedSpeed: 1480 * units.RPM, Efficiency: 0.930, FixedShare: DefaultFixedShare}
