@@ -66,7 +66,7 @@ func TestElectricRefusals(t *testing.T) {
 			t.Errorf("accepted %+v", m)
 		}
 	}
-	if DefaultConverter.Check() != nil || (Converter{Linear: -1}).Check() == nil || (Converter{NoLoad: math.NaN()}).Check() == nil {
+	if UsualConverter(22e3).Check() != nil || (Converter{Linear: -1}).Check() == nil || (Converter{NoLoad: math.NaN()}).Check() == nil {
 		t.Error("converter check")
 	}
 }
@@ -84,25 +84,24 @@ var (
 	}
 )
 
-// Tolerance 1 point, where the default holds: 30 hp at every load, 20 to 75 hp from 25 % load up, 100 hp from 42 %
-// up. Where it does not: no-load losses of the table fall with size, so that 5 and 10 hp converters are up to 15
-// and 9 points worse than the default at 1.6 % load (1.7 and 0.7 at full load), and one of 200 hp is 11 points
-// better at 1.6 % and still 1.02 at 42 %.
+// Tolerance 1 point at every load of every row; between 30 and 50 hp between the two rows.
 func TestConverterAgainstTable(t *testing.T) {
 	for _, row := range converterTable {
+		rated := row.hp * units.Horsepower
+		c := UsualConverter(rated)
 		for i, x := range converterLoads {
-			rated := row.hp * units.Horsepower
 			p := x * rated
-			diff := 100*p/(p+DefaultConverter.Loss(-p, rated)) - row.eta[i]
-			if row.hp == 30 || row.hp >= 20 && row.hp <= 75 && x >= 0.25 || row.hp == 100 && x >= 0.42 {
-				expectAbs(t, fmt.Sprintf("%v hp at %v %%", row.hp, 100*x), diff, 0, 1)
-			}
+			expectAbs(t, fmt.Sprintf("%v hp at %v %%", row.hp, 100*x), 100*p/(p+c.Loss(-p, rated)), row.eta[i], 1)
 		}
+	}
+	a, b, c := UsualConverter(30*units.Horsepower), UsualConverter(50*units.Horsepower), UsualConverter(40*units.Horsepower)
+	if !(c.NoLoad > a.NoLoad && c.NoLoad < b.NoLoad) || UsualConverter(1) != UsualConverter(5*units.Horsepower) || UsualConverter(1e6) != UsualConverter(200*units.Horsepower) {
+		t.Error("between and beyond the rows")
 	}
 }
 
-// The defaults are a least-squares fit of efficiency to the 30 hp row; redone here with an independent library:
-// the loss l = x(1/η − 1) is weighted with dη/dl = x/(x + l)².
+// The fit of one row, redone with an independent library: the loss l = x(1/η − 1) is weighted with
+// dη/dl = x/(x + l)², to first order the least squares of efficiency.
 func TestConverterFit(t *testing.T) {
 	i := slices.IndexFunc(converterTable, func(r struct {
 		hp  float64
@@ -122,7 +121,8 @@ func TestConverterFit(t *testing.T) {
 	if err := fit.SolveVec(a, b); err != nil {
 		t.Fatal(err)
 	}
-	expectAbs(t, "no load", fit.AtVec(0), DefaultConverter.NoLoad, 5.1e-5)
-	expectAbs(t, "linear", fit.AtVec(1), DefaultConverter.Linear, 5.1e-5)
-	expectAbs(t, "square", fit.AtVec(2), DefaultConverter.Square, 5.1e-5)
+	c := UsualConverter(30 * units.Horsepower)
+	expectAbs(t, "no load", fit.AtVec(0), c.NoLoad, 2e-4)
+	expectAbs(t, "linear", fit.AtVec(1), c.Linear, 2e-4)
+	expectAbs(t, "square", fit.AtVec(2), c.Square, 2e-4)
 }
