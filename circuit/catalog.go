@@ -55,6 +55,7 @@ type Param struct {
 	Need    bool    // must be given
 	Choices []string
 	Text    string
+	Derived string // what its default follows from in each block, "" where it is the same for all
 
 	defaultValue Value
 }
@@ -93,6 +94,9 @@ type Kind struct {
 	Rating    string // key of the parameter that limits its pressure, if any
 	// Symbol returns the name of its drawing symbol; see also SymbolOf.
 	Symbol func(b *Block) string
+	// derive returns the default of a parameter that follows from others of the block; ok = false where the
+	// parameter's own default holds.
+	derive func(b *Block, key string) (v Value, ok bool)
 	// check adds what only this kind can say of a block.
 	check func(k *Kind, b *Block, bad func(level Level, param, format string, args ...any))
 	// build makes the model of a block; nil for blocks that only join or fix nodes.

@@ -63,10 +63,16 @@ func (c *Circuit) Block(id string) *Block {
 }
 
 // Value returns what block b has for a parameter: the number given, else the
-// default of its kind (ok = true for both), else ok = false.
+// default, one that follows from other parameters before that of its kind
+// (ok = true for all), else ok = false.
 func (k *Kind) Value(b *Block, key string) (v Value, isDefault, ok bool) {
 	if v, found := b.Values[key]; found {
 		return v, false, true
+	}
+	if k.derive != nil {
+		if v, found := k.derive(b, key); found {
+			return v, true, true
+		}
 	}
 	if p := k.Param(key); p != nil && p.Default != "" {
 		return p.defaultValue, true, true

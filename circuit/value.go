@@ -33,5 +33,10 @@ type Value struct {
 	Line      int // in the file, from 1; 0 when not from a file
 }
 
+// derived makes a default that follows from other parameters, with where it comes from.
+func derived(si float64, o Origin, source string) Value {
+	return Value{SI: si, Origin: o, Low: math.NaN(), High: math.NaN(), Note: source}
+}
+
 // Given makes a value from a number in SI.
 func Given(si float64) Value { return Value{SI: si, Low: math.NaN(), High: math.NaN()} }
