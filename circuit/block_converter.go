@@ -50,7 +50,7 @@ var converterKind = &Kind{
 }
 
 // converterDefault is the derive of converterKind: the loss law by size.
-func converterDefault(b *Block, key string) (Value, bool) {
+func converterDefault(_ *Kind, b *Block, key string) (Value, bool) {
 	v, ok := b.Values["rated_power"]
 	if !ok || v.SI <= 0 {
 		return Value{}, false

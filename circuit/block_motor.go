@@ -21,6 +21,7 @@ var hydraulicMotorKind = &Kind{
 		Param{Key: "axis", Title: "Axis", Type: AxisRef, Text: "axis of the duty that it drives"},
 		Param{Key: "hold", Title: "Held by", Type: Choice, Choices: []string{"valve", "pump", "brake"}, Text: "what holds the axis at standstill"},
 		Param{Key: "gear", Title: "Gear ratio", Symbol: "i", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "direct drive", Above: true, Max: 1e4, Text: "motor speed over axis speed"},
+		Param{Key: "starting_torque", Title: "Starting torque", Symbol: "τ0", Dim: units.Ratio, Default: "0.8", Origin: Assumed, Source: "piston motor, common practice, no source", Above: true, Max: 1, Text: "at standstill, over the ideal torque D·Δp; the motor must break away with it"},
 		Param{Key: "gear_efficiency", Title: "Gear efficiency", Symbol: "ηg", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "no gear", Above: true, Max: 1, Text: "of the gear, both ways"},
 	),
 	Losses:    append([]LossKind{{"gearbox", ToAir, "P = |T|/i·(1 − ηg)/ηg·|ω|"}}, machineLosses...),

@@ -94,9 +94,8 @@ type Kind struct {
 	Rating    string // key of the parameter that limits its pressure, if any
 	// Symbol returns the name of its drawing symbol; see also SymbolOf.
 	Symbol func(b *Block) string
-	// derive returns the default of a parameter that follows from others of the block; ok = false where the
-	// parameter's own default holds.
-	derive func(b *Block, key string) (v Value, ok bool)
+	// derive gives what a block has for a number that is not given, where that follows from others.
+	derive func(k *Kind, b *Block, key string) (Value, bool)
 	// check adds what only this kind can say of a block.
 	check func(k *Kind, b *Block, bad func(level Level, param, format string, args ...any))
 	// build makes the model of a block; nil for blocks that only join or fix nodes.

@@ -62,15 +62,14 @@ func (c *Circuit) Block(id string) *Block {
 	return nil
 }
 
-// Value returns what block b has for a parameter: the number given, else the
-// default, one that follows from other parameters before that of its kind
-// (ok = true for all), else ok = false.
+// Value returns what block b has for a parameter: the number given, else what
+// follows from others that are given, else the default of its kind (ok = true for both), else ok = false.
 func (k *Kind) Value(b *Block, key string) (v Value, isDefault, ok bool) {
 	if v, found := b.Values[key]; found {
 		return v, false, true
 	}
 	if k.derive != nil {
-		if v, found := k.derive(b, key); found {
+		if v, ok := k.derive(k, b, key); ok {
 			return v, true, true
 		}
 	}

@@ -43,7 +43,7 @@ func fieldSpeed(b *Block) float64 {
 const usualSlip = 20.0 / 1500
 
 // electricMotorDefault is the derive of electricMotorKind.
-func electricMotorDefault(b *Block, key string) (Value, bool) {
+func electricMotorDefault(_ *Kind, b *Block, key string) (Value, bool) {
 	rated := b.Values["rated_power"].SI
 	switch key {
 	case "efficiency":
