@@ -86,6 +86,8 @@ func printParam(w io.Writer, p *circuit.Param) {
 	switch {
 	case p.Need:
 		facts = append(facts, "must be given")
+	case p.Derived != "":
+		facts = append(facts, "default: "+p.Derived)
 	case p.Default != "" && p.Origin != "":
 		facts = append(facts, fmt.Sprintf("default %s, %s: %s", p.Default, p.Origin, p.Source))
 	case p.Default != "":

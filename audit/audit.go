@@ -51,6 +51,7 @@ type DutyRun struct {
 	Certificate circuit.Certificate
 	Peak        circuit.Peak
 	Shortfalls  []circuit.Shortfall
+	Gates       []circuit.Gate // of drives, motors and held axes
 	Plot        *Plot
 	Operating   map[string][]Operating // states of the displacement machines, by block
 }
@@ -90,6 +91,7 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
 		c.Money = s.Tariff.YearCost(c.Year)
 		c.Findings = append(c.Findings, c.remarks()...)
+		c.Findings = append(c.Findings, s.fuelRemarks(c)...)
 		c.Findings = append(c.Findings, circuitCautions(c)...)
 	}
 	s.Comparisons = s.compare()
@@ -236,7 +238,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	}
 	r.Certificate, r.Plot = cert, plot.plot
 	r.Cycles = cycles
-	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls(cycles)
+	r.Peak, r.Shortfalls, r.Gates = watch.PeakPressure(), watch.Shortfalls(cycles), watch.Gates()
 	r.Operating = operation.all()
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())

@@ -32,6 +32,7 @@ type Balance struct {
 	Seconds  Split   // s
 	SupplyIn Split   // J, >= 0
 	Returned Split   // J, >= 0
+	Fuel     Split   // J, part of SupplyIn that engines burn
 	Work     []WorkRow
 	Stored   []LossRow // end minus start, either sign
 	Losses   []LossRow
@@ -50,6 +51,7 @@ func (l *Ledger) Balance(repeats bool) *Balance {
 		Seconds:  l.items[base+itemSeconds],
 		SupplyIn: l.items[base+itemSupplyIn],
 		Returned: l.items[base+itemReturned],
+		Fuel:     l.items[base+itemFuel],
 		Demand:   demand(l.t, l.supply, repeats, DemandWindow),
 
 		PeakSupply: l.drawn.value, PeakSupplyAt: l.drawn.at,
@@ -82,7 +84,7 @@ func (b *Balance) average(n int) *Balance {
 	}
 	k := 1 / float64(n)
 	b.Cycle *= k
-	b.Seconds, b.SupplyIn, b.Returned = b.Seconds.Times(k), b.SupplyIn.Times(k), b.Returned.Times(k)
+	b.Seconds, b.SupplyIn, b.Returned, b.Fuel = b.Seconds.Times(k), b.SupplyIn.Times(k), b.Returned.Times(k), b.Fuel.Times(k)
 	for i := range b.Work {
 		b.Work[i].Positive, b.Work[i].Negative = b.Work[i].Positive.Times(k), b.Work[i].Negative.Times(k)
 	}

@@ -132,7 +132,7 @@ func (s *Solution) lossOfCycle(p printer, c *CircuitRun, duty int, block, kind s
 		return ""
 	}
 	e = nothing(e, b.SupplyIn.Total())
-	return joined([]string{"E = " + overCycle(p, b, e), s.ofYear(p, d, e)})
+	return joined([]string{"E = " + overCycle(p, b, e), s.ofYear(p, c, d, e)})
 }
 
 func overCycle(p printer, b *Balance, e float64) string {
@@ -140,20 +140,21 @@ func overCycle(p printer, b *Balance, e float64) string {
 }
 
 // ofYear carries the energy of a cycle over to the hours of its duty.
-func (s *Solution) ofYear(p printer, d *DutyRun, e float64) string {
+func (s *Solution) ofYear(p printer, c *CircuitRun, d *DutyRun, e float64) string {
 	n := d.cycles()
 	if !known(n) {
 		return "no hours a year are given, so the duty is left out of the year"
 	}
 	text := fmt.Sprintf("a year: %s × %s cycles (%s / %s) = %s", p.energy(e), p.count(n), p.hours(d.Duty.Hours), p.seconds(d.Balance.Cycle), p.kWh(e*n))
-	return joined([]string{text, s.inMoney(p, e*n)})
+	return joined([]string{text, s.inMoney(p, c, e*n)})
 }
 
-func (s *Solution) inMoney(p printer, e float64) string {
-	if !known(s.Tariff.Price) {
+func (s *Solution) inMoney(p printer, c *CircuitRun, e float64) string {
+	price := s.unitPrice(c)
+	if !known(price) {
 		return ""
 	}
-	return fmt.Sprintf("%s × %s = %s a year", p.kWh(e), p.price(s.Tariff.Price), p.money(e*s.Tariff.Price))
+	return fmt.Sprintf("%s × %s = %s a year", p.kWh(e), p.price(price), p.money(e*price))
 }
 
 func (s *Solution) lossOfYear(p printer, c *CircuitRun, block, kind string) string {
@@ -169,7 +170,7 @@ func (s *Solution) lossOfYear(p printer, c *CircuitRun, block, kind string) stri
 		e, _ := lossIn(b.Losses, block, kind)
 		return nothing(e, b.SupplyIn.Total())
 	})
-	return joined([]string{text + " = " + p.kWh(e), s.inMoney(p, e)})
+	return joined([]string{text + " = " + p.kWh(e), s.inMoney(p, c, e)})
 }
 
 // RowCalculation opens a row of EnergyRows. Terms that the report has as figures are
@@ -186,7 +187,7 @@ func (s *Solution) RowCalculation(circuit, duty int, row EnergyRow, sys units.Sy
 	for _, f := range dutyPage(p, c.Duties[duty]).Figures {
 		if f.Name == row.Name {
 			calc := f.Calculation
-			calc.Numbers = joined([]string{calc.Numbers, s.ofYear(p, c.Duties[duty], row.Energy.Total())})
+			calc.Numbers = joined([]string{calc.Numbers, s.ofYear(p, c, c.Duties[duty], row.Energy.Total())})
 			return calc
 		}
 	}
@@ -207,6 +208,6 @@ func (s *Solution) termOfYear(p printer, c *CircuitRun, row EnergyRow) Calculati
 		return Calculation{}
 	}
 	text := c.sum(p, func(b *Balance) float64 { return nothing(of(b).Total(), b.SupplyIn.Total()) })
-	return Calculation{yearFormula, joined([]string{text + " = " + p.kWh(row.Energy.Total()), s.inMoney(p, row.Energy.Total())}),
+	return Calculation{yearFormula, joined([]string{text + " = " + p.kWh(row.Energy.Total()), s.inMoney(p, c, row.Energy.Total())}),
 		"balance of each duty; hours and price from " + fromFile}
 }

@@ -52,11 +52,11 @@ func (d *DutyRun) cycles() float64 {
 }
 
 func (s *Solution) energyRows(c *CircuitRun, losses []LossRow, cycles float64, against, taken, stored, returned, drawn Split) []EnergyRow {
-	whole := drawn.Total()
+	whole, price := drawn.Total(), s.unitPrice(c)
 	var out []EnergyRow
 	add := func(name, to string, e Split) *EnergyRow {
 		e = Split{nothing(e.Working, whole), nothing(e.Holding, whole), nothing(e.Idle, whole), nothing(e.Driving, whole)}
-		row := EnergyRow{Name: name, To: to, Energy: e, Share: math.NaN(), Year: e.Total() * cycles, Money: e.Total() * cycles * s.Tariff.Price}
+		row := EnergyRow{Name: name, To: to, Energy: e, Share: math.NaN(), Year: e.Total() * cycles, Money: e.Total() * cycles * price}
 		if whole != 0 {
 			row.Share = e.Total() / whole
 		}

@@ -32,10 +32,15 @@ const Format = "barlitre/1"
 //	oil: ...                      needed, see below
 //	air: {temperature: 30 C}      around the tank
 //	energy: {price: 0.18 EUR/kWh, co2: 0.35 kg/kWh, co2_year: 2024,
-//	         co2_basis: location | market, credit_returned: no}
+//	         co2_basis: location | market, credit_returned: no,
+//	         fuel_price: 1.6 EUR/L, fuel_co2: 2.66 kg/L,
+//	         fuel_density: 0.83 kg/L, fuel_heating_value: 43.0 MJ/kg}
 //	axes: {ram: linear, drum: rotary}
 //	duties:                       a list, needed
 //	circuits:                     a list, needed
+//
+// What an engine burns is priced at fuel_price, by volume or mass, and counted with fuel_co2; what is not
+// given of it, but for the price, is that of mineral diesel.
 //
 // A quantity is a number with a decimal point and a unit, "160 bar", as read by
 // units.Parse; or a mapping, when more is known of it:
@@ -116,6 +121,9 @@ type File struct {
 	CO2Year        int    // 0 = not given
 	CO2Basis       string // "location", "market" or "" when not given
 	CreditReturned bool   // energy returned to the mains is paid for
+
+	FuelPrice, FuelCO2, FuelDensity, FuelHeating             circuit.Value // money per m³ or kg, kg/m³, kg/m³, J/kg
+	HasFuelPrice, HasFuelCO2, HasFuelDensity, HasFuelHeating bool
 
 	Axes     []duty.Axis
 	Duties   []*duty.Duty

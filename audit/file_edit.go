@@ -77,6 +77,7 @@ func (f *File) Set(target, quantity string) error {
 var bandDim = map[string]units.Dim{
 	"temperature": units.Temperature, "density": units.Density, "viscosity": units.DynamicViscosity,
 	"price": units.EnergyPrice, "co2": units.CO2Factor,
+	"fuel_co2": units.Density, "fuel_density": units.Density, "fuel_heating_value": units.SpecificEnergy,
 }
 
 // moveBand takes low and high along when a value leaves them: they said how sure

@@ -97,7 +97,7 @@ func (r *reader) positive(s scope, f map[string]entry, key string, d units.Dim) 
 
 func (r *reader) energy(n *yaml.Node) {
 	s := scope{where: "energy"}
-	f := r.fields(scope{}, n, "energy", "price", "co2", "co2_year", "co2_basis", "credit_returned")
+	f := r.fields(scope{}, n, "energy", "price", "co2", "co2_year", "co2_basis", "credit_returned", "fuel_price", "fuel_co2", "fuel_density", "fuel_heating_value")
 	a := r.file
 	if a.Price, a.HasPrice = r.optional(s, f, "price", units.EnergyPrice); a.HasPrice {
 		r.money(s, f["price"].value, "price", a.Price)
@@ -108,6 +108,7 @@ func (r *reader) energy(n *yaml.Node) {
 	a.CO2Year = r.number(s, f, "co2_year", 1990, 2100)
 	a.CO2Basis = r.word(s, f, "co2_basis", "location", "market")
 	a.CreditReturned = r.flag(s, f, "credit_returned", false)
+	r.fuelKeys(s, f)
 }
 
 // money checks that all sums are in one currency: no rate of exchange is known.

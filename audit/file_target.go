@@ -21,7 +21,7 @@ var sections = map[string][]string{
 	"site":   {"name", "customer", "author", "date", "note", "currency"},
 	"oil":    {"grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100", "specific_heat", "bulk_modulus", "air", "start_temperature"},
 	"air":    {"temperature"},
-	"energy": {"price", "co2", "co2_year", "co2_basis", "credit_returned"},
+	"energy": {"price", "co2", "co2_year", "co2_basis", "credit_returned", "fuel_price", "fuel_co2", "fuel_density", "fuel_heating_value"},
 }
 
 // circuitKeys are what Set reaches of a circuit besides its blocks.

@@ -33,9 +33,11 @@ func given(v circuit.Value, has bool) float64 {
 
 func (f *File) tariff() Tariff {
 	t := Tariff{Price: given(f.Price, f.HasPrice), Currency: f.Site.Currency, CreditReturned: f.CreditReturned,
-		CO2: given(f.CO2, f.HasCO2), CO2Basis: f.CO2Basis}
-	if t.Currency == "" && f.HasPrice {
-		t.Currency, _, _ = strings.Cut(f.Price.Unit.Symbol, "/")
+		CO2: given(f.CO2, f.HasCO2), CO2Basis: f.CO2Basis, Fuel: f.fuel()}
+	for _, v := range []circuit.Value{f.Price, f.FuelPrice} {
+		if t.Currency == "" && v.Unit.Symbol != "" {
+			t.Currency, _, _ = strings.Cut(v.Unit.Symbol, "/")
+		}
 	}
 	if f.CO2Year != 0 {
 		t.CO2Year = strconv.Itoa(f.CO2Year)

@@ -68,12 +68,12 @@ type Ledger struct {
 	axisOf   []int    // by channel; −1 when it is not work
 	shafts   []int    // signals that make up the shaft power of the prime movers
 
-	items     []Split   // booked: channels, then seconds, supply in, returned, work + and − by axis
+	items     []Split   // booked: channels, then seconds, supply in, returned, fuel, work + and − by axis
 	now, last []float64 // W, by item
 	lastMode  mode
 	lastDrive bool
 
-	t, supply []float64 // s, W, by time step: the 15-minute mean needs the course
+	t, supply []float64 // s, W from the mains, by time step: the 15-minute mean needs the course
 	shaft     peak
 	drawn     peak
 	gap       peak // W, largest |supply − work − stored − losses| of a time step
@@ -93,6 +93,7 @@ const (
 	itemSeconds = iota
 	itemSupplyIn
 	itemReturned
+	itemFuel // part of supply in
 	itemWork // positive and negative, by axis
 )
 
@@ -135,7 +136,7 @@ func (l *Ledger) Sample(s *circuit.Sample) error {
 			return fmt.Errorf("energy balance: time runs backwards from %g s to %g s", l.t[len(l.t)-1], s.T)
 		}
 	}
-	net, gap, err := l.powers(s)
+	net, mains, gap, err := l.powers(s)
 	if err != nil {
 		return err
 	}
@@ -146,9 +147,10 @@ func (l *Ledger) Sample(s *circuit.Sample) error {
 			l.items[i].book(l.now[i]*dt/2, m, s.Driving)
 		}
 	}
+	l.pulses(s, m)
 	l.last, l.now = l.now, l.last
 	l.lastMode, l.lastDrive = m, s.Driving
-	l.t, l.supply = append(l.t, s.T), append(l.supply, net)
+	l.t, l.supply = append(l.t, s.T), append(l.supply, mains)
 	l.drawn.meet(net, s.T, first)
 	l.gap.meet(gap, s.T, first)
 	shaft := 0.0
@@ -159,9 +161,29 @@ func (l *Ledger) Sample(s *circuit.Sample) error {
 	return nil
 }
 
-// powers fills now with the power of every item, and returns the supply and what
-// the powers lack to balance [W].
-func (l *Ledger) powers(s *circuit.Sample) (net, gap float64, err error) {
+// isFuel reports whether a supply is the fuel of an engine, not the mains.
+func isFuel(c circuit.Channel) bool { return c.Role == circuit.Supply && c.Kind == "fuel" }
+
+// pulses books what a time step draws and loses at once, such as the start of a motor.
+func (l *Ledger) pulses(s *circuit.Sample, m mode) {
+	base := len(l.channels)
+	for i, e := range s.Pulse {
+		if e == 0 {
+			continue
+		}
+		l.items[i].book(e, m, s.Driving)
+		if l.channels[i].Role == circuit.Supply {
+			l.items[base+itemSupplyIn].book(e, m, s.Driving)
+		}
+		if isFuel(l.channels[i]) {
+			l.items[base+itemFuel].book(e, m, s.Driving)
+		}
+	}
+}
+
+// powers fills now with the power of every item, and returns the supply, that part of it which is
+// from the mains, and what the powers lack to balance [W].
+func (l *Ledger) powers(s *circuit.Sample) (net, mains, gap float64, err error) {
 	base := len(l.channels)
 	for i := base; i < len(l.now); i++ {
 		l.now[i] = 0
@@ -171,13 +193,16 @@ func (l *Ledger) powers(s *circuit.Sample) (net, gap float64, err error) {
 	for i, p := range s.Power {
 		c := l.channels[i]
 		if math.IsNaN(p) || math.IsInf(p, 0) {
-			return 0, 0, fmt.Errorf("energy balance: %s of %s is not a number at %g s", c.Kind, c.Block, s.T)
+			return 0, 0, 0, fmt.Errorf("energy balance: %s of %s is not a number at %g s", c.Kind, c.Block, s.T)
 		}
 		l.now[i] = p
 		switch c.Role {
 		case circuit.Supply:
 			net += p
 			gap += p
+			if !isFuel(c) {
+				mains += p
+			}
 		case circuit.Work:
 			work[2*l.axisOf[i]] += p
 			gap -= p
@@ -185,12 +210,13 @@ func (l *Ledger) powers(s *circuit.Sample) (net, gap float64, err error) {
 			gap -= p
 		}
 	}
-	l.now[base+itemSupplyIn], l.now[base+itemReturned] = math.Max(net, 0), math.Max(-net, 0)
+	fuel := net - mains
+	l.now[base+itemSupplyIn], l.now[base+itemReturned], l.now[base+itemFuel] = math.Max(mains, 0)+fuel, math.Max(-mains, 0), fuel
 	for a := range l.axes {
 		p := work[2*a]
 		work[2*a], work[2*a+1] = math.Max(p, 0), math.Min(p, 0)
 	}
-	return net, math.Abs(gap), nil
+	return net, mains, math.Abs(gap), nil
 }
 
 func modeOf(s *circuit.Sample) mode {

@@ -15,6 +15,7 @@ type Tariff struct {
 	CO2            float64 // kg/J; NaN when not given
 	CO2Year        string  // of the factor
 	CO2Basis       string  // "location" or "market"
+	Fuel           Fuel
 }
 
 // CostRange is money by three views [currency]; NaN where not given.
@@ -29,20 +30,34 @@ type YearCost struct {
 	Drawn    float64 // money a year for the energy drawn
 	Credit   float64 // money a year for the energy returned, 0 unless the tariff credits it
 	Credited bool
-	CO2      float64 // kg a year for the energy drawn; NaN without a factor
+	CO2      float64 // kg a year for the energy drawn; NaN without a factor that it needs
 }
 
 // Net returns the bill [money a year].
 func (c YearCost) Net() float64 { return c.Drawn - c.Credit }
 
-// YearCost prices a year. Its money is NaN when no price is given. Emissions follow
-// the energy drawn alone: what a neighbour does with returned energy is not known here.
+// YearCost prices a year: what is from the mains and what engines burn, each at its own price and factor. Its money is
+// NaN when a price that it needs is not given. Emissions follow the energy drawn alone: what a neighbour does with
+// returned energy is not known here.
 func (t Tariff) YearCost(y *Year) YearCost {
-	c := YearCost{Drawn: y.Drawn.Total() * t.Price, Credited: t.CreditReturned, CO2: y.Drawn.Total() * t.CO2}
-	if t.CreditReturned {
+	c := YearCost{Drawn: t.of(y, t.Price, t.Fuel.Price), Credited: t.CreditReturned, CO2: t.of(y, t.CO2, t.Fuel.CO2)}
+	if t.CreditReturned && y.Returned.Total() > 0 {
 		c.Credit = y.Returned.Total() * t.Price
 	}
 	return c
+}
+
+// of sums what the two kinds of energy of a year come to; a rate that is not needed need not be known.
+func (t Tariff) of(y *Year, mains, fuel float64) float64 {
+	burnt := y.Fuel.Total()
+	if burnt == 0 {
+		return y.Drawn.Total() * mains
+	}
+	sum := burnt * fuel
+	if rest := y.Drawn.Total() - burnt; rest > 1e-9*burnt {
+		sum += rest * mains
+	}
+	return sum
 }
 
 // Payback is the simple payback [years] of a cost by a saving a year,

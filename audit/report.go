@@ -70,6 +70,7 @@ type DutyPage struct {
 	Name    string
 	Figures []Figure
 	Losses  Table
+	Gates   Table // what it asks of drives, motors and held axes; no rows where there is nothing to ask
 }
 
 // Table is a table of printed cells. The first column is text, the others are numbers.

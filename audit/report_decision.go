@@ -102,10 +102,10 @@ func (s *Solution) decisionRows(p printer, c *Comparison) []DecisionRow {
 	add("mean heat to the oil", figureNamed(hb, "mean heat to the oil, all running hours"), figureNamed(ha, "mean heat to the oil, all running hours"), p.power)
 	add("cooler for it", figureNamed(hb, "cooler for it, all running hours"), figureNamed(ha, "cooler for it, all running hours"), p.cooler)
 	add("cooler for the hottest duty", hottestCooler(p, c.Base, hb), hottestCooler(p, c.Proposal, ha), p.cooler)
-	if known(s.Tariff.Price) {
+	if known(s.unitPrice(c.Base)) || known(s.unitPrice(c.Proposal)) {
 		add("cost of energy a year", figureNamed(yb, "cost of energy a year"), figureNamed(ya, "cost of energy a year"), p.money)
 	}
-	if known(s.Tariff.CO2) {
+	if known(c.Base.Money.CO2) || known(c.Proposal.Money.CO2) {
 		add("CO2 a year", figureNamed(yb, "CO2 a year"), figureNamed(ya, "CO2 a year"), p.mass)
 	}
 	return rows
@@ -153,7 +153,7 @@ func (s *Solution) outcome(p printer, c *Comparison) []Figure {
 	}
 	if known(c.MoneyDrawn) {
 		add("money saved on energy drawn a year", c.MoneyDrawn, p.money(c.MoneyDrawn), Calculation{"ΔK = ΔE · price",
-			p.kWh(c.SavedDrawn) + " × " + p.price(s.Tariff.Price), "marginal price, from " + fromFile})
+			s.savedNumbers(c, p.kWh(c.SavedDrawn)+" × "+p.price(s.Tariff.Price), p.money(c.Base.Money.Drawn)+" − "+p.money(c.Proposal.Money.Drawn)), "marginal price, from " + fromFile})
 		if s.Tariff.CreditReturned {
 			add("paid for returned energy a year, more than before", c.MoneyCredit, p.money(c.MoneyCredit), Calculation{"(R_after − R_before) · price",
 				fmt.Sprintf("(%s − %s) × %s", p.kWh(c.Proposal.Year.Returned.Total()), p.kWh(c.Base.Year.Returned.Total()), p.price(s.Tariff.Price)), "credited because the file says so"})
@@ -169,7 +169,7 @@ func (s *Solution) outcome(p printer, c *Comparison) []Figure {
 	}
 	add("simple payback", c.Payback.Likely, c.Payback.String(), calc)
 	if known(c.CO2Saved) {
-		add("CO2 saved a year", c.CO2Saved, p.mass(c.CO2Saved), Calculation{"Δm = ΔE · f", p.kWh(c.SavedDrawn) + " × " + s.Tariff.co2Text(),
+		add("CO2 saved a year", c.CO2Saved, p.mass(c.CO2Saved), Calculation{"Δm = ΔE · f", s.savedNumbers(c, p.kWh(c.SavedDrawn)+" × "+s.Tariff.co2Text(), p.mass(c.Base.Money.CO2)+" − "+p.mass(c.Proposal.Money.CO2)),
 			"factor from " + fromFile + "; held for every year, though factors of mains fall"})
 	}
 	return out

@@ -18,7 +18,7 @@ const (
 
 func dutyPage(p printer, d *DutyRun) DutyPage {
 	b := d.Balance
-	page := DutyPage{Name: d.Duty.Name, Losses: lossTable(p, b)}
+	page := DutyPage{Name: d.Duty.Name, Losses: lossTable(p, b), Gates: gateTable(d.Gates)}
 	add := func(name string, v float64, text string, c Calculation) {
 		page.Figures = append(page.Figures, Figure{name, v, text, c})
 	}
@@ -92,12 +92,14 @@ func (s *Solution) yearFigures(p printer, c *CircuitRun) []Figure {
 		kWhFigure("work against loads a year", y.WorkPositive().Total(), func(b *Balance) float64 { return b.WorkPositive().Total() }),
 		kWhFigure("heat to the oil a year", y.HeatToOil().Total(), func(b *Balance) float64 { return b.HeatToOil().Total() }),
 	}
-	if known(s.Tariff.Price) {
+	if y.Fuel.Total() > 0 {
+		out = append(out, s.fuelFigure(p, c))
+	}
+	if known(s.unitPrice(c)) {
 		out = append(out, s.costFigure(p, c))
 	}
-	if known(s.Tariff.CO2) {
-		out = append(out, Figure{"CO2 a year", c.Money.CO2, p.mass(c.Money.CO2), Calculation{"m = E_drawn · f",
-			p.kWh(y.Drawn.Total()) + " × " + s.Tariff.co2Text(), "factor from " + fromFile}})
+	if known(c.Money.CO2) {
+		out = append(out, Figure{"CO2 a year", c.Money.CO2, p.mass(c.Money.CO2), Calculation{"m = E_drawn · f", s.co2Numbers(p, c), "factor from " + fromFile}})
 	}
 	return out
 }
@@ -106,6 +108,9 @@ func (s *Solution) costFigure(p printer, c *CircuitRun) Figure {
 	y, m := c.Year, c.Money
 	calc := Calculation{"K = E_drawn · price", fmt.Sprintf("%s × %s = %s", p.kWh(y.Drawn.Total()), p.price(s.Tariff.Price), p.money(m.Drawn)),
 		"marginal price, from " + fromFile}
+	if y.Fuel.Total() > 0 {
+		calc = s.fuelCost(p, c)
+	}
 	if m.Credited {
 		calc.Formula = "K = (E_drawn − E_returned) · price"
 		calc.Numbers = fmt.Sprintf("%s − %s for %s returned = %s", p.money(m.Drawn), p.money(m.Credit), p.kWh(y.Returned.Total()), p.money(m.Net()))

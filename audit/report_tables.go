@@ -127,7 +127,8 @@ func shareText(p printer, part, whole float64) string {
 func (s *Solution) yearLossTable(p printer, c *CircuitRun) Table {
 	y := c.Year
 	t := Table{Title: "Where the energy of a year goes", Head: []string{"", "to", "a year", "share of drawn"}}
-	priced := known(s.Tariff.Price)
+	price := s.unitPrice(c)
+	priced := known(price)
 	if priced {
 		t.Head = append(t.Head, "money a year")
 	}
@@ -135,7 +136,7 @@ func (s *Solution) yearLossTable(p printer, c *CircuitRun) Table {
 		e = nothing(e, y.Drawn.Total())
 		cells := []string{name, to, p.kWh(e), shareText(p, e, y.Drawn.Total())}
 		if priced {
-			cells = append(cells, p.money(e*s.Tariff.Price))
+			cells = append(cells, p.money(e*price))
 		}
 		t.add(sum, cells...)
 	}
@@ -149,6 +150,9 @@ func (s *Solution) yearLossTable(p printer, c *CircuitRun) Table {
 	row(true, "drawn from the supply", "", y.Drawn.Total())
 	if priced {
 		t.Note = "Money is energy times the price of energy; a loss that is avoided may change others."
+		if y.Fuel.Total() > 0 {
+			t.Note = "Money is energy times what a kilowatt-hour drawn costs here, fuel at its heating value; a loss that is avoided may change others."
+		}
 	}
 	return t
 }
@@ -195,3 +199,17 @@ func shortfallTable(p printer, c *Comparison) Table {
 }
 
 func lost(s circuit.Shortfall) string { return units.Number(s.LostStroke, 3) }
+
+// gateTable sets what a cycle asks of drives, motors and held axes against what they stand.
+func gateTable(gates []circuit.Gate) Table {
+	t := Table{Title: "What the cycle asks and what there is", Head: []string{"", "asked", "limit", "", "why"}}
+	for _, g := range gates {
+		limit, passed := "not given", ""
+		if known(g.Limit) {
+			limit = units.Format(g.Limit, g.Unit, 3)
+			passed = map[bool]string{true: "passed", false: "not passed"}[g.Passed]
+		}
+		t.add(false, g.Block+": "+g.Name, units.Format(g.Value, g.Unit, 3), limit, passed, g.Reason)
+	}
+	return t
+}

@@ -103,6 +103,9 @@ func (s *Solution) moneyAssumptions(p printer) []string {
 	if known(t.CO2) {
 		out = append(out, "CO2 follows energy drawn at "+t.co2Text()+".")
 	}
+	if s.File.Burns() {
+		out = append(out, s.fuelAssumption(p))
+	}
 	out = append(out, s.coolerAssumption(p))
 	return out
 }

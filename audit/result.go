@@ -66,6 +66,7 @@ type DutyResult struct {
 	Closure        float64           `json:"closure_relative"`
 	Peak           PeakResult        `json:"peak"`
 	Shortfall      []ShortfallResult `json:"shortfall"`
+	Gates          []GateResult      `json:"gates"`
 	Certificate    CertificateResult `json:"certificate"`
 }
 
@@ -103,6 +104,19 @@ type ShortfallResult struct {
 	Axis       string `json:"axis"`
 	Seconds    Number `json:"seconds"`
 	LostStroke Number `json:"lost_stroke_m"`
+}
+
+// GateResult sets what a cycle asks of a block against what it stands, both in the unit named.
+type GateResult struct {
+	Block     string `json:"block"`
+	Name      string `json:"name"`
+	Parameter string `json:"parameter"`
+	Value     Number `json:"value"`
+	Limit     Number `json:"limit"` // null where none is given
+	Unit      string `json:"unit"`
+	T         Number `json:"t_s"`
+	Passed    bool   `json:"passed"`
+	Reason    string `json:"reason"`
 }
 
 // CertificateResult says how well the time steps are balanced.
@@ -157,10 +171,15 @@ func dutyResult(d *DutyRun) DutyResult {
 		Peak: PeakResult{Pressure: Number(d.Peak.Value), At: d.Peak.At, T: Number(d.Peak.T), UpperEstimate: d.Peak.UpperEstimate,
 			Shaft: Number(b.PeakShaft), Supply: Number(b.PeakSupply)},
 		Shortfall:   []ShortfallResult{},
+		Gates:       []GateResult{},
 		Certificate: CertificateResult{c.Unbalanced, Number(c.Worst), Number(c.Force), c.Fallbacks},
 	}
 	for _, l := range b.Losses {
 		out.Energy.Losses = append(out.Energy.Losses, LossResult{l.Block, l.Kind, l.Sink, l.Energy.Total()})
+	}
+	for _, g := range d.Gates {
+		out.Gates = append(out.Gates, GateResult{g.Block, g.Name, g.Parameter, Number(g.Unit.FromSI(g.Value)), Number(g.Unit.FromSI(g.Limit)),
+			g.Unit.Symbol, Number(g.T), g.Passed, g.Reason})
 	}
 	for _, s := range d.Shortfalls {
 		out.Shortfall = append(out.Shortfall, shortfallResult(s))

@@ -16,6 +16,8 @@ type YearResult struct {
 
 	Drawn        float64      `json:"kWh_drawn"`
 	Returned     float64      `json:"kWh_returned"`
+	Fuel         float64      `json:"kWh_fuel"` // part of kWh_drawn that engines burn
+	FuelLitres   float64      `json:"fuel_L"`
 	WorkPositive float64      `json:"kWh_work_positive"`
 	WorkNegative float64      `json:"kWh_work_negative"`
 	Stored       float64      `json:"kWh_stored"`
@@ -85,6 +87,7 @@ func (s *Solution) yearResult(c *CircuitRun) YearResult {
 		Complete: y.Complete, MissingDuties: append([]string{}, y.Missing...), Hours: y.Hours / units.Hour,
 		Duties: []YearDutyResult{}, Losses: []YearLoss{},
 		Drawn: y.Drawn.Total() / kWh, Returned: y.Returned.Total() / kWh,
+		Fuel: y.Fuel.Total() / kWh, FuelLitres: t.Fuel.Volume(y.Fuel.Total()) / units.Litre,
 		WorkPositive: y.WorkPositive().Total() / kWh, WorkNegative: y.WorkNegative().Total() / kWh,
 		Stored: y.Stored.Total() / kWh, HeatToOil: y.HeatToOil().Total() / kWh,
 		States: StatesResult{

@@ -26,6 +26,7 @@ type Year struct {
 	Seconds  Split   // s, by state
 	Drawn    Split   // J
 	Returned Split   // J
+	Fuel     Split   // J, part of Drawn that engines burn
 	Work     []WorkRow
 	Stored   Split
 	Losses   []LossRow
@@ -56,6 +57,7 @@ func (y *Year) add(r *DutyRun) {
 	y.Hours += r.Duty.Hours
 	y.Seconds = y.Seconds.Plus(b.Seconds.Times(n))
 	y.Drawn = y.Drawn.Plus(b.SupplyIn.Times(n))
+	y.Fuel = y.Fuel.Plus(b.Fuel.Times(n))
 	y.Returned = y.Returned.Plus(b.Returned.Times(n))
 	y.Stored = y.Stored.Plus(b.StoredEnergy().Times(n))
 	for _, l := range b.Losses {

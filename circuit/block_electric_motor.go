@@ -1,230 +1,61 @@
 package circuit
 
-import (
-	"math"
+import "barlitre/machines/units"
 
-	"barlitre/circuit/duty"
-	"barlitre/machines"
-	"barlitre/machines/units"
-)
-
-// electricMotorKind is an induction motor: it gives its shaft a speed, and the
-// machines on the shaft ask it for torque.
+// electricMotorKind is an induction or permanent-magnet motor: it gives its shaft a
+// speed, and the machines on the shaft ask it for torque.
 var electricMotorKind = &Kind{
 	Name: kindElectricMotor, Title: "Electric motor", Group: "supply",
-	Text: "Induction motor. It turns at constant speed, or, behind a frequency converter, at the speed that makes an axis move as the duty says (`follows`) or that a track commands. With a `torque_limit` it slows down when the machines on its shaft ask for more. Without a converter what comes back goes to the mains.",
+	Text: "Induction motor or permanent-magnet servo motor, in four quadrants: driven by its shaft it is a generator. It turns at constant speed; with `slip`, straight on the mains, slower as it gives more torque; or, behind a frequency converter, at the speed that makes an axis move as the duty says (`follows`) or that a track commands. With `commands: torque` its track commands a torque and its speed is found, as of a generator. With a `torque_limit` it slows down when the machines on its shaft ask for more. Without a converter what comes back goes to the mains. Its efficiency is typed, or that of its `efficiency_class` and `poles`.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},
 		{Name: "E", Type: Electric, Optional: true, Text: "terminals; unconnected it hangs on the mains"},
 	},
 	Params: []Param{
 		{Key: "rated_power", Title: "Rated power", Symbol: "PN", Dim: units.Power, Need: true, Above: true, Max: 5e6, Text: "shaft power on the name plate"},
-		{Key: "efficiency", Title: "Efficiency at rated load", Symbol: "ηN", Dim: units.Ratio, Need: true, Above: true, Max: 1, Text: "on the name plate, or of its class by IEC 60034-30-1"},
-		{Key: "speed", Title: "Speed", Symbol: "n", Dim: units.AngularSpeed, Default: "1480 rpm", Origin: Assumed, Source: "four poles, 50 Hz, loaded; common practice", Above: true, Max: 1000, Text: "rated speed; a motor of constant speed turns at it"},
+		{Key: "type", Title: "Type", Type: Choice, Default: "induction", Choices: []string{"induction", "permanent_magnet"}, Text: "permanent_magnet: servo motor without slip, behind a converter"},
+		{Key: "efficiency_class", Title: "Efficiency class", Type: Choice, Choices: []string{"IE1", "IE2", "IE3", "IE4"}, Text: "by IEC 60034-30-1, 0.75 to 200 kW, 2, 4 or 6 poles, 50 Hz; gives the efficiency where none is typed"},
+		{Key: "poles", Title: "Poles", Symbol: "p", Dim: units.Count, Default: "4", Origin: Assumed, Source: "most pump motors, common practice", Min: 2, Max: 12, Text: "even; with the frequency they give the speed of the field"},
+		{Key: "efficiency", Title: "Efficiency at rated load", Symbol: "ηN", Dim: units.Ratio, Above: true, Max: 1, Derived: "that of its efficiency class", Text: "on the name plate; or give its efficiency_class"},
+		{Key: "speed", Title: "Speed", Symbol: "n", Dim: units.AngularSpeed, Default: "1480 rpm", Origin: Assumed, Source: "four poles, 50 Hz, loaded; common practice", Above: true, Max: 1000, Derived: "1480 rpm with four poles at 50 Hz, else 1.3 % below that of the field", Text: "rated speed; a motor of constant speed turns at it"},
+		{Key: "frequency", Title: "Frequency of the mains", Symbol: "f", Dim: units.Frequency, Default: "50 Hz", Origin: Assumed, Source: "most mains outside America", Above: true, Max: 400, Text: "with the poles it gives the speed of the field"},
+		{Key: "slip", Title: "Slip", Type: Choice, Default: "no", Choices: []string{"no", "yes"}, Text: "yes: straight on the mains its speed falls from that of the field without load to the rated one at rated torque, and rises above as it generates; no: it keeps its rated speed"},
 		{Key: "control", Title: "Speed", Type: Choice, Default: "constant", Choices: []string{"constant", "commanded"}, Text: "what sets the speed"},
 		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its speed is found from the motion of this axis"},
+		{Key: "commands", Title: "Commands are of", Type: Choice, Default: "speed", Choices: []string{"speed", "torque"}, Text: "what a command of 1 means: its highest speed, or its torque limit (rated torque without one), below 0 braking a shaft that turns forwards"},
 		{Key: "max_speed", Title: "Highest speed", Symbol: "n2", Dim: units.AngularSpeed, Above: true, Max: 2000, Text: "of a motor of variable speed; default: its speed"},
 		{Key: "both_directions", Title: "Both directions", Type: Choice, Default: "no", Choices: []string{"no", "yes"}, Text: "a motor of variable speed may turn backwards"},
 		{Key: "torque_limit", Title: "Torque limit", Symbol: "TL", Dim: units.Torque, Above: true, Max: 1e5, Text: "most it gives, as its converter or its pull-out torque limits it; without one it gives what is asked"},
+		{Key: "idle_speed", Title: "Soft idle speed", Symbol: "n0", Dim: units.AngularSpeed, Above: true, Max: 1000, Text: "a motor of constant speed behind a converter turns at it while every axis stands, unless pump_at_rest stops it"},
 		{Key: "fixed_share", Title: "Fixed losses", Symbol: "kf", Dim: units.Ratio, Default: "0.35", Origin: Assumed, Source: "iron, friction and windage at full speed as share of the rated loss, common practice", Max: 1, Text: "share of the rated loss that does not depend on load"},
 		{Key: "loss", Title: "Loss law", Type: Choice, Default: "torque_speed", Choices: []string{"torque_speed", "power"}, Text: "torque_speed; or power, the older law in shaft power alone, which knows no loss of holding torque at standstill"},
+		{Key: "torque_constant", Title: "Torque constant", Symbol: "kT", Dim: units.TorqueConstant, Above: true, Max: 1e3, Text: "of a permanent_magnet motor: torque per rms current of a phase"},
+		{Key: "resistance", Title: "Phase resistance", Symbol: "R", Dim: units.ElectricResistance, Max: 100, Text: "of a permanent_magnet motor, warm; with the torque constant it gives the copper loss"},
+		{Key: "speed_loss", Title: "Loss at speed", Symbol: "P0", Dim: units.Power, Max: 1e5, Derived: "the rated loss less that of the copper", Text: "of a permanent_magnet motor with torque constant: iron, friction and windage at rated speed"},
+		{Key: "voltage", Title: "Voltage", Symbol: "U", Dim: units.Voltage, Default: "400 V", Origin: Assumed, Source: "low-voltage mains in Europe", Above: true, Max: 15e3, Text: "between phases; for the current"},
+		{Key: "power_factor", Title: "Power factor", Symbol: "cosφ", Dim: units.Ratio, Default: "0.85", Origin: Assumed, Source: "four poles, 10 to 50 kW, common practice; smaller and slower ones less", Above: true, Max: 1, Text: "at rated load, on the name plate; at part load it follows a generic curve, assumed"},
+		{Key: "breakdown", Title: "Breakdown torque", Symbol: "kb", Dim: units.Ratio, Default: "2", Origin: Assumed, Source: "most motors pull out near 2 to 3 times, common practice; IEC 60034-1 asks for 1.6, from memory", Min: 1, Max: 10, Text: "over the rated torque; of a servo motor its peak torque"},
+		{Key: "cooling", Title: "Cooling", Type: Choice, Default: "self", Choices: []string{"self", "forced"}, Text: "self: a fan on its shaft, so that below half speed it can stand less torque, half of it at standstill (common practice, no source); forced: a fan of its own"},
+		{Key: "starts_per_hour", Title: "Starts an hour", Symbol: "z", Dim: units.Count, Above: true, Max: 1e4, Derived: "30·(PN/hp)^−0.38 with 4 poles, half with 2, a seventh more with 6: NEMA MG 10, from memory", Text: "permitted straight on the mains"},
+		{Key: "inertia", Title: "Moment of inertia", Symbol: "J", Dim: units.Inertia, Max: 1e4, Derived: "0.002 kg m2·(PN/kW)^1.5·(p/4)², from memory of motors of 4 to 110 kW", Text: "of the motor and what turns with it, for the energy of a start"},
+		{Key: "start_loss", Title: "Loss of a start", Symbol: "ks", Dim: units.Ratio, Default: "2", Origin: Assumed, Source: "the rotor heats by the energy of motion (textbook, from memory), the stator by about as much; behind a converter a tenth of it, no source", Max: 10, Text: "heat of a start on the mains over the energy of motion"},
 	},
-	Losses: []LossKind{{"electric motor", ToAir, "P = PV·(kf·|ω|/ωN + (1 − kf)·(T/TN)²), PV = PN·(1/ηN − 1)"}},
+	Losses: []LossKind{
+		{"electric motor", ToAir, "P = PV·(kf·|ω|/ωN + (1 − kf)·(T/TN)²), PV = PN·(1/ηN − 1)"},
+		{"starting", ToAir, "E = (1 + ks)·J·(ω² − ω0²)/2 a start; behind a converter ks/10"},
+	},
 	Equations: []Equation{
 		{"PV = PN·(1/ηN − 1); loss = PV·(kf·|ω|/ωN + (1 − kf)·(T/TN)²)", "loss separation, e.g. IEC 60034-2-1; fixed share assumed"},
+		{"permanent_magnet with kT and R: loss = 3·R·(T/kT)² + P0·|ω|/ωN, I = |T|/kT", "synchronous machine, current in quadrature, textbook"},
+		{"slip: T = TN·(ωs − ω)/(ωs − ωN), ωs = 2π·f/(p/2)", "linear part of the torque curve, textbook; beyond twice the rated torque it is too stiff"},
+		{"I = √((|T|·ωN + loss)² + Q²)/(√3·U), Q = QN·(0.7 + 0.3·(T/TN)²), cosφ = P/√(P² + Q²)", "magnetizing and leakage part; share 0.7 assumed, common practice"},
 		{"with a torque limit: ω = set speed while Σ T <= TL, else Σ T = TL", "complementarity of set speed and limit; the current at the limit is not described"},
+		{"commands torque: Σ T = command·TL, ω found, ω >= 0 unless both_directions", "torque control of a converter; its dynamics and the inertia are not described"},
+		{"start: E = (1 + ks)·J·(ω² − ω0²)/2", "energy of motion, lost when it runs out, and heat of the windings"},
 		{"older law: loss = PV·(kf + (1 − kf)·(P/PN)²)", "part-load law in shaft power"},
 	},
 	Symbol: func(*Block) string { return "electric_motor" },
-	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
-		if follows(b) != "" && b.Word("control") != "" {
-			bad(Stops, "control", "it follows an axis and has a control of its own; keep one of `follows` and `control`")
-		}
-	},
-	build: buildElectricMotor,
-}
-
-type electricModel struct {
-	id                              string
-	k                               *Compiled
-	shaft                           int
-	speed                           slot
-	ctl                             controlKind
-	axis                            int
-	vel                             slot
-	hold                            string
-	polarity                        polarity
-	back                            bool
-	power                           bool // older loss law
-	limit                           int  // parameter, −1 none
-	sigma                           slot // friction of the machines on a limited shaft
-	torque                          slot // unknown of a limited motor that follows an axis
-	el                              int  // electric node, −1 on the mains
-	rated, eta, n, nMax, fixedShare int
-	loss, supply                    int
-	sigW, sigT, sigShaft, sigEl     int
-
-	law         machines.InductionMotor
-	wPer        float64
-	w, lo, hi   float64
-	tracking    bool
-	dir, wanted float64
-	most, tPer  float64 // scaled torque limit; N·m of one scaled unit
-	way         float64 // in which it is told to turn
-	off         bool
-}
-
-func buildElectricMotor(k *compiler, b *Block) model {
-	m := &electricModel{id: b.ID, k: k.Compiled, shaft: k.shaftAt(b), axis: -1, el: -1,
-		rated: k.param(b, "rated_power"), eta: k.param(b, "efficiency"), n: k.param(b, "speed"), nMax: k.param(b, "max_speed"), fixedShare: k.param(b, "fixed_share"),
-		loss: k.channel(Loss, b, "electric motor"), supply: -1,
-		sigW: k.signal(b, "w", "speed", units.AngularSpeed), sigT: k.signal(b, "T", "shaft torque", units.Torque),
-		sigShaft: k.signal(b, "shaft", "shaft power", units.Power), sigEl: k.signal(b, "electric", "power at the terminals", units.Power),
-		limit: k.param(b, "torque_limit"), torque: noSlot,
-		back: KindNamed(b.Kind).WordOf(b, "both_directions") == "yes", power: KindNamed(b.Kind).WordOf(b, "loss") == "power",
-	}
-	m.speed, m.sigma = k.shafts[m.shaft].speed, k.shafts[m.shaft].sigma
-	if n := k.of[PortRef{b.ID, "E"}]; n != nil && len(n.ports) > 1 {
-		m.el = k.elOf[n.id]
-	} else {
-		m.supply = k.channel(Supply, b, "supply")
-	}
-	switch {
-	case follows(b) != "":
-		m.ctl, m.axis = followsAxis, k.axisOf[follows(b)]
-		m.vel, m.hold = k.movers[m.axis].speed, k.movers[m.axis].hold
-		m.polarity = k.shaftPolarity(b, m.axis)
-		if m.limit >= 0 && m.sigma >= 0 {
-			m.torque = k.unknown(otherRow, b.ID+" torque")
-		}
-	case KindNamed(b.Kind).WordOf(b, "control") == "commanded":
-		m.ctl = takesTrack
-	}
-	return m
-}
-
-func (m *electricModel) clone() model { c := *m; return &c }
-
-func (m *electricModel) bind(b *binding) {
-	w := b.p[m.n]
-	m.law = machines.InductionMotor{RatedPower: b.p[m.rated], RatedSpeed: w, Efficiency: b.p[m.eta], FixedShare: b.p[m.fixedShare]}
-	size := m.k.shafts[m.shaft].size(b.p)
-	m.wPer = b.scales.q / size
-	m.w = w / m.wPer
-	m.hi = b.get(m.nMax, w) / m.wPer
-	if m.back {
-		m.lo = -m.hi
-	}
-	m.tPer = size * b.scales.p
-	m.most = b.get(m.limit, 0) / m.tPer
-	if m.speed >= 0 && m.limit < 0 {
-		b.bound.Weight[m.speed] = 10
-	}
-}
-
-func (m *electricModel) begin(s *step) {
-	m.tracking, m.off = false, s.off()
-	switch m.ctl {
-	case heldConstant:
-		if m.off {
-			m.turn(s, 0)
-		} else {
-			m.turn(s, m.w)
-		}
-	case takesTrack:
-		v := 1.0
-		if c, ok := s.command(m.id, duty.Command); ok {
-			v = c
-		}
-		if m.off {
-			v = 0
-		}
-		m.turn(s, math.Max(m.lo, v*m.hi))
-	case followsAxis:
-		a := &s.axes[m.axis]
-		m.dir = m.polarity.sign(a)
-		switch {
-		case m.off, a.standing && m.hold != "pump":
-			m.turn(s, 0)
-		case a.given != duty.MotionLoad:
-			m.turn(s, math.Max(m.lo, m.dir*a.command*m.hi))
-		default:
-			s.bounds(m.speed, m.lo, m.hi)
-			m.tracking, m.wanted = true, a.scaledDemand
-			if m.torque >= 0 {
-				s.bounds(m.torque, -m.most, m.most)
-				s.bounds(m.sigma, -1, 1)
-			}
-		}
-	}
-}
-
-// turn tells the motor its speed, which a torque limit may keep it from.
-func (m *electricModel) turn(s *step, w float64) {
-	if m.limit < 0 {
-		s.set(m.speed, w)
-		return
-	}
-	m.way = 0
-	if w != 0 {
-		m.way = sign(w)
-	}
-	s.bounds(m.speed, math.Min(0, w), math.Max(0, w))
-	s.set(m.sigma, m.way)
-	if m.torque >= 0 {
-		s.set(m.torque, 0)
-	}
-}
-
-func (m *electricModel) eval(e *eval) {
-	switch {
-	case m.tracking && m.torque >= 0:
-		e.add(m.speed, -e.val(m.torque))
-		e.d(m.speed, m.torque, -1)
-		e.add(m.torque, m.dir*(e.val(m.vel)-m.wanted)) // more torque, more speed
-		e.d(m.torque, m.vel, m.dir)
-	case m.tracking:
-		e.add(m.speed, m.dir*(e.val(m.vel)-m.wanted))
-		e.d(m.speed, m.vel, m.dir)
-	case m.limit >= 0:
-		e.add(m.speed, -m.way*m.most)
-	}
-}
-
-func (m *electricModel) book(*booking) {} // after all machines: bookShaft
-
-// bookShaft books the motor once the torque of its shaft is summed.
-func (m *electricModel) bookShaft(k *booking) {
-	w, T := k.val(m.speed)*m.wPer, k.shaft[m.shaft].torque
-	if m.limit >= 0 && math.Abs(k.val(m.speed)) <= stalled*m.hi { // it gives what it can
-		T = math.Max(-m.most*m.tPer, math.Min(m.most*m.tPer, T))
-	}
-	P := T * w
-	loss := 0.0
-	switch {
-	case m.off: // switched off: neither turns nor draws
-	case m.power:
-		loss = m.law.LossPower(P)
-	default:
-		loss = m.law.LossTorqueSpeed(T, w)
-	}
-	k.put(m.sigW, w)
-	k.put(m.sigT, T)
-	k.put(m.sigShaft, P)
-	k.put(m.sigEl, P+loss)
-	k.pow[m.loss] += loss
-	if m.el >= 0 {
-		k.el[m.el] += P + loss
-	} else {
-		k.pow[m.supply] += P + loss
-	}
-}
-
-func (m *electricModel) cold(s *step, level int, x []float64) {
-	if m.speed >= 0 {
-		x[m.speed] = (m.lo + m.hi) / 2
-		if m.limit >= 0 && !m.tracking {
-			x[m.speed] = m.w
-		}
-	}
+	derive: electricMotorDefault,
+	check:  checkElectricMotor,
+	build:  buildElectricMotor,
 }

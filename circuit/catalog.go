@@ -56,6 +56,7 @@ type Param struct {
 	Need    bool    // must be given
 	Choices []string
 	Text    string
+	Derived string // what its default follows from in each block, "" where it is the same for all
 
 	defaultValue Value
 }

@@ -9,22 +9,24 @@ func limited(b *Block) bool {
 	return b.Kind == kindEngine || (ok && b.Kind == kindElectricMotor)
 }
 
-// slows refuses what cannot turn with a drive whose torque limit lets its speed fall, and
-// notes what an engine's supply is.
+// slows refuses what cannot turn with a drive whose speed its torque lets fall.
 func (k *checker) slows(nets []*net, drive *Block) {
-	if !limited(drive) {
+	why := "whose torque is limited"
+	switch {
+	case slips(drive):
+		why = "whose speed falls with torque"
+	case commandsTorque(drive):
+		why = "whose torque is commanded"
+	case !limited(drive):
 		return
-	}
-	if drive.Kind == kindEngine {
-		k.say(Note, drive, "", "what it draws is counted as energy of its fuel; the energy price and the CO2 factor must be those of the fuel")
 	}
 	for _, n := range nets {
 		for _, p := range n.ports {
 			switch b := k.c.Block(p.Block); {
 			case b.Kind == kindFlywheel:
-				k.say(Stops, b, "", "it turns with %s, whose torque is limited: how the wheel carries it over is not described. Drop the flywheel, or the torque limit", drive.ID)
+				k.say(Stops, b, "", "it turns with %s, %s: how the wheel carries it over is not described. Drop the flywheel, or give the drive a speed", drive.ID, why)
 			case b.Word("axis") != "":
-				k.say(Stops, b, "axis", "it drives an axis on the shaft of %s, whose torque is limited; that is not described. Drop the torque limit", drive.ID)
+				k.say(Stops, b, "axis", "it drives an axis on the shaft of %s, %s; that is not described. Give the drive a speed", drive.ID, why)
 			}
 		}
 	}
@@ -43,4 +45,24 @@ func (k *checker) reference(b *Block) {
 		}
 	}
 	k.say(Stops, b, "reference_speed", "no motor or engine turns its shaft; give the reference_speed that its power limit or set flow belongs to")
+}
+
+// terminals checks what a motor's terminals hang on.
+func (k *checker) terminals(b *Block) {
+	n := k.of[PortRef{b.ID, "E"}]
+	converter := n != nil && len(n.ports) > 1
+	_, idles := b.Values["idle_speed"]
+	switch {
+	case converter && slips(b):
+		k.say(Stops, b, "slip", "a converter feeds it, which makes up for slip; drop one of the two")
+	case converter:
+	case isServo(b):
+		k.say(Stops, b, "type", "a permanent_magnet motor cannot start on the mains; join its terminals E to a converter")
+	case idles:
+		k.say(Stops, b, "idle_speed", "only a converter can turn it slower; join its terminals E to one, or drop idle_speed")
+	case commandsTorque(b):
+		k.say(Stops, b, "commands", "only a converter can command its torque; join its terminals E to one")
+	case varies(b):
+		k.say(Note, b, "", "its speed varies but no converter feeds it; the losses of the converter are not counted, and what comes back goes to the mains")
+	}
 }

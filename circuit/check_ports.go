@@ -144,8 +144,8 @@ func (k *checker) shafts() {
 				k.say(Stops, b, "axis", "it drives nothing: give it an axis, or join its shaft to another machine")
 			}
 		}
-		if b.Kind == kindElectricMotor && (follows(b) != "" || KindNamed(b.Kind).WordOf(b, "control") == "commanded") && k.of[PortRef{b.ID, "E"}] == nil {
-			k.say(Note, b, "", "its speed varies but no converter feeds it; the losses of the converter are not counted, and what comes back goes to the mains")
+		if b.Kind == kindElectricMotor {
+			k.terminals(b)
 		}
 	}
 }

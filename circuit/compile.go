@@ -261,10 +261,10 @@ func (k *compiler) newShaft(n *net, imposed bool) int {
 		s.driver = b.ID
 		tracks := follows(b) != "" && k.duty.Given(follows(b)) == duty.MotionLoad
 		switch {
-		case limited(b):
+		case limited(b), slips(b), commandsTorque(b):
 			s.free, s.speed = true, k.unknown(forceRow, b.ID+" speed")
 			s.row = s.speed
-			if tracks {
+			if tracks || commandsTorque(b) {
 				s.sigma = k.unknown(otherRow, b.ID+" friction")
 			} else {
 				s.sigma = k.fixed() // it turns the way it is told to

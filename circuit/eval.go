@@ -263,6 +263,7 @@ type step struct {
 	slow     []float64 // slow states at the point before
 	axes     []axisStep
 	standing bool   // all axes stand
+	stood    bool   // all axes stood at the point before
 	atRest   AtRest // what the prime movers do while all stand
 	commands map[duty.Control][]float64
 	solver   *balance.Solver
@@ -303,6 +304,9 @@ func (s *step) command(block string, w duty.What) (float64, bool) {
 // off reports whether the prime movers are switched off.
 func (s *step) off() bool { return s.standing && s.atRest == Stop }
 
+// startsUp reports whether the prime movers leave what they do at rest at this point.
+func (s *step) startsUp() bool { return s.stood && !s.standing }
+
 // unloaded reports whether relief valves are vented.
 func (s *step) unloaded() bool { return s.standing && s.atRest == Unload }
 
@@ -340,6 +344,9 @@ type booking struct {
 	pow   []float64
 	shaft []shaftBook
 	el    []float64 // W drawn at electric nodes, by node
+	each  []float64 // W, Σ|P| of what hangs at electric nodes
+	elJ   []float64 // J drawn at electric nodes at this instant
+	pulse []float64 // J, by channel
 	next  []float64 // slow states at this point
 }
 

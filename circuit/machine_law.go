@@ -2,11 +2,9 @@ package circuit
 
 import (
 	"fmt"
-	"math"
 	"strings"
 
 	"barlitre/machines"
-	"barlitre/machines/units"
 )
 
 // familyWords are the families as files write them.
@@ -126,12 +124,6 @@ func coefficient(m machines.Displacement, key string) (float64, bool) {
 		return m.Tc, true
 	}
 	return 0, false
-}
-
-// derived makes a value that the program worked out, written in the usual unit.
-func derived(p *Param, si float64, o Origin, note string) Value {
-	u := units.Preferred(p.Dim, units.Metric)
-	return Value{SI: si, Text: units.Format(si, u, 4), Unit: u, Origin: o, Low: math.NaN(), High: math.NaN(), Note: note}
 }
 
 // checkMachine says what does not go together in a displacement machine.

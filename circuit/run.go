@@ -108,8 +108,9 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 	}
 	r.sort()
 	r.book = booking{scales: r.scales, cond: cond, step: &r.step, sig: make([]float64, len(c.signals)), pow: make([]float64, len(c.channels)),
-		shaft: make([]shaftBook, len(c.shafts)), el: make([]float64, c.electric)}
-	r.sample = Sample{Signals: r.book.sig, Power: r.book.pow, Axes: make([]AxisNow, len(c.axes)), Void: make([]float64, len(c.nodes))}
+		shaft: make([]shaftBook, len(c.shafts)), el: make([]float64, c.electric), each: make([]float64, c.electric), elJ: make([]float64, c.electric),
+		pulse: make([]float64, len(c.channels))}
+	r.sample = Sample{Signals: r.book.sig, Power: r.book.pow, Pulse: r.book.pulse, Axes: make([]AxisNow, len(c.axes)), Void: make([]float64, len(c.nodes))}
 	return r
 }
 
@@ -129,7 +130,10 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 	if warm {
 		copy(x, st.x)
 	}
-	r.state = State{travel: make([]float64, len(r.axes)), speed: make([]float64, len(r.axes)), lastT: st.lastT, begun: st.begun}
+	r.state = State{travel: make([]float64, len(r.axes)), speed: make([]float64, len(r.axes)), lastT: st.lastT, begun: st.begun, stood: st.stood}
+	if !st.begun {
+		r.state.stood = endsStanding(r.series)
+	}
 	copy(r.state.travel, st.travel)
 	copy(r.state.speed, st.speed)
 	good := append([]float64(nil), x...)
@@ -226,7 +230,7 @@ func (r *run) next(k int, share float64) float64 {
 // the step itself, and lets every block prepare.
 func (r *run) begin(k int, share float64) {
 	s := &r.step
-	s.k, s.standing = k, true
+	s.k, s.standing, s.stood = k, true, r.state.stood
 	s.t = between(r.series.T, k, share)
 	s.dt = 0
 	if r.state.begun {
@@ -355,6 +359,9 @@ func (r *run) bookAll() {
 	clear(b.pow)
 	clear(b.shaft)
 	clear(b.el)
+	clear(b.each)
+	clear(b.elJ)
+	clear(b.pulse)
 	b.eval = r.ev
 	b.eval.x = r.step.x
 	for _, m := range r.models {
@@ -416,8 +423,18 @@ func (r *run) axesNow(k int, unbalanced bool) {
 		r.state.travel[i] += dt * (r.state.speed[i] + now.Speed) / 2
 		r.state.speed[i] = now.Speed
 	}
-	r.state.lastT = s.T
+	r.state.lastT, r.state.stood = s.T, r.step.standing
 	copy(r.state.slow, r.book.next)
+}
+
+// endsStanding reports whether a duty that repeats ends with all axes standing: so it then begins.
+func endsStanding(s *duty.Series) bool {
+	for i := range s.Axes {
+		if st := s.Axes[i].Standing; len(st) == 0 || !st[len(st)-1] {
+			return false
+		}
+	}
+	return s.Repeats
 }
 
 // stillSpeed [m/s, rad/s] is a speed that nobody sees: a millimetre in a quarter of an hour.

@@ -55,6 +55,7 @@ type Sample struct {
 	T          float64
 	Signals    []float64 // by Compiled.Signals
 	Power      []float64 // W, by Compiled.Channels
+	Pulse      []float64 // J, by Compiled.Channels: what is booked at this instant beside the powers, such as the start of a motor
 	Axes       []AxisNow // by Compiled.Axes
 	Standing   bool      // every axis stands
 	Holding    bool      // every axis stands and at least one under a load
@@ -147,6 +148,7 @@ type State struct {
 	x      []float64
 	travel []float64 // m or rad, by axis
 	speed  []float64 // m/s or rad/s, by axis
+	stood  bool      // all axes stood
 	slow   []float64 // gas volumes, flywheel speeds, switch states
 	lastT  float64
 	begun  bool

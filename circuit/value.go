@@ -33,5 +33,11 @@ type Value struct {
 	Line      int // in the file, from 1; 0 when not from a file
 }
 
+// derived makes a default that follows from other parameters, written in the usual unit.
+func derived(p *Param, si float64, o Origin, source string) Value {
+	u := units.Preferred(p.Dim, units.Metric)
+	return Value{SI: si, Text: units.Format(si, u, 4), Unit: u, Origin: o, Low: math.NaN(), High: math.NaN(), Note: source}
+}
+
 // Given makes a value from a number in SI.
 func Given(si float64) Value { return Value{SI: si, Low: math.NaN(), High: math.NaN()} }

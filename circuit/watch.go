@@ -27,7 +27,8 @@ type Watch struct {
 	span   float64
 	mach   []machineWatch
 	drives []driveWatch
-	breaks []breakWatch
+	links  []linkWatch
+	sets   []startWatch
 }
 
 // extreme is the range of a signal and when it was reached.
@@ -48,16 +49,9 @@ type axisWatch struct {
 	ended, tEnd      float64 // s against an end while it should move; when it first was
 	end, wasEnd      int     // that end; the end at the step before
 	lastV            float64
-}
-
-type motorWatch struct {
-	b            *Block
-	torque       int
-	speed        int
-	square, peak float64
-	tPeak        float64
-	last         float64
-	rated        float64
+	crept, stood     float64 // way [m or rad] and time [s] at standstill in which it was not held
+	creep, tCreep    float64 // highest speed at standstill
+	wasStill         bool
 }
 
 type reliefWatch struct {
@@ -101,16 +95,13 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 		}
 		return -1
 	}
-	_, nets := netsOf(c.circuit)
 	for _, b := range sorted(c.circuit.Blocks) {
-		if b.Kind == kindHydraulicMotor {
-			w.breakaway(b, nets)
-		}
 		w.drive(b, get(b.ID+".w"), get(b.ID+".T"))
 		switch b.Kind {
 		case kindElectricMotor:
-			p, n := w.value(b, "rated_power"), w.value(b, "speed")
-			w.motors = append(w.motors, motorWatch{b: b, torque: get(b.ID + ".T"), speed: get(b.ID + ".w"), rated: p / n})
+			w.motors = append(w.motors, w.motor(b, get))
+		case kindConverter:
+			w.links = append(w.links, linkWatch{b: b, resistor: w.channelOf(b, "brake resistor")})
 		case kindRelief:
 			w.reds = append(w.reds, reliefWatch{b: b, flow: get(b.ID + ".P.q"), p: get(b.ID + ".P.p")})
 		case kindPump, kindChargePump, kindHydraulicMotor, kindFlowDivider:
@@ -127,8 +118,12 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 				m.min = v.SI
 			}
 			w.mach = append(w.mach, m)
+			if b.Kind == kindHydraulicMotor && b.Word("axis") != "" {
+				w.sets = append(w.sets, w.startOf(b))
+			}
 		}
 	}
+	w.stop = c.circuit.PumpAtRest == Stop && endsStanding(s)
 	return w
 }
 
@@ -177,16 +172,17 @@ func (w *Watch) Sample(s *Sample) error {
 	}
 	w.cycle(s.T, dt)
 	for i := range w.axes {
+		w.axes[i].creeps(s.Axes[i], w.series.Axes[i].Given, s.T, dt)
 		w.axes[i].take(s.Axes[i], w.series.Axes[i].Given, w.series.Axes[i].Top, s.T, dt)
 	}
 	for i := range w.motors {
-		m := &w.motors[i]
-		T := s.Signals[m.torque]
-		m.square += dt * (T*T + m.last*m.last) / 2
-		if math.Abs(T) > m.peak {
-			m.peak, m.tPeak = math.Abs(T), s.T
-		}
-		m.last = T
+		w.motors[i].take(s, dt)
+	}
+	for i := range w.links {
+		w.links[i].take(s, dt)
+	}
+	for i := range w.sets {
+		w.sets[i].take(s)
 	}
 	for i := range w.reds {
 		r := &w.reds[i]
@@ -204,9 +200,6 @@ func (w *Watch) Sample(s *Sample) error {
 	}
 	for i := range w.drives {
 		w.drives[i].take(s, dt)
-	}
-	for i := range w.breaks {
-		w.breaks[i].take(s)
 	}
 	for i, q := range s.Void {
 		v := &w.voids[i]

@@ -17,6 +17,7 @@ type driveWatch struct {
 	seconds, worst, tWor  float64 // held back by its limit; lowest speed and when
 	stalls                bool
 	tStall, fastest, tFas float64
+	drag, brakes, tBrakes float64 // torque that turns an engine without fuel; highest that drove it, and when
 	last                  bool
 }
 
@@ -25,7 +26,7 @@ const standsStill = 1e-3
 
 // drive watches a prime mover whose torque is limited.
 func (w *Watch) drive(b *Block, speed, torque int) {
-	if !limited(b) {
+	if !limited(b) || commandsTorque(b) {
 		return
 	}
 	d := driveWatch{b: b, speed: speed, torque: torque, set: w.value(b, "speed"), limit: w.value(b, "torque_limit"), worst: math.Inf(1), top: math.Inf(1),
@@ -37,12 +38,16 @@ func (w *Watch) drive(b *Block, speed, torque int) {
 		}
 		d.grow, d.least = w.value(b, "torque_rise"), w.value(b, "min_speed")
 		d.top = d.set * (1 + w.value(b, "droop"))
+		d.drag = w.value(b, "idle_share") * w.value(b, "rated_power") / (d.set * w.value(b, "slope"))
 	}
 	w.drives = append(w.drives, d)
 }
 
 func (d *driveWatch) take(s *Sample, dt float64) {
 	v, T := math.Abs(s.Signals[d.speed]), math.Abs(s.Signals[d.torque])
+	if T := -s.Signals[d.torque]; T > d.brakes {
+		d.brakes, d.tBrakes = T, s.T
+	}
 	most := d.limit * (1 + d.grow*math.Max(0, 1-v/d.set))
 	held := !s.Stopped && T >= most*(1-1e-6) && (!d.steady || v < d.set*(1-1e-3))
 	if held && d.last {

@@ -19,9 +19,8 @@ func (w *Watch) Findings() []Finding {
 	f := &findings{circuit: w.c.circuit, duty: w.series.Duty.Name}
 	w.ratings(f)
 	w.speeds(f)
-	w.torques(f)
 	w.drivesHeld(f)
-	w.breakaways(f)
+	w.gatesMissed(f)
 	w.motions(f)
 	w.reliefs(f)
 	w.accumulators(f)
@@ -30,23 +29,7 @@ func (w *Watch) Findings() []Finding {
 			f.add(Warns, nil, "", v.t, "%s runs empty: %s are missing at %s. Feed it through a make-up check valve, or hold the load back with a counterbalance valve", w.c.nodes[i].name, show(v.worst, units.Flow), clock(v.t))
 		}
 	}
-	if w.starts > 0 && w.span > 0 && w.onLine() {
-		if perHour := float64(w.starts) * 3600 / w.span; perHour > 10 {
-			f.add(Warns, nil, "pump_at_rest", 0, "the motors are started %s times an hour; a direct-on-line motor usually stands 6 to 15 (common practice, ask its maker), use a converter or unload instead", units.Number(perHour, 3))
-		}
-	}
 	return f.list
-}
-
-// onLine reports whether a motor hangs on the mains without a converter.
-func (w *Watch) onLine() bool {
-	_, of := netsOf(w.c.circuit)
-	for _, m := range w.motors {
-		if n := of[PortRef{m.b.ID, "E"}]; n == nil || len(n.ports) < 2 {
-			return true
-		}
-	}
-	return false
 }
 
 type findings struct {
@@ -101,24 +84,6 @@ func (w *Watch) speeds(f *findings) {
 		}
 		if m.slowTime > 0 {
 			f.add(Warns, m.b, "min_speed", m.tSlow, "turns at %s under pressure, below its lowest speed of %s, for %s a cycle; its bearings may run dry", show(m.slow, units.AngularSpeed), show(m.min, units.AngularSpeed), clock(m.slowTime))
-		}
-	}
-}
-
-func (w *Watch) torques(f *findings) {
-	for _, m := range w.motors {
-		if m.rated <= 0 || w.span <= 0 {
-			continue
-		}
-		rms := math.Sqrt(m.square / w.span)
-		if rms > m.rated*1.0001 {
-			f.add(Warns, m.b, "rated_power", 0, "its mean square torque of %s is above the rated %s; it will overheat, choose a larger motor", show(rms, units.Torque), show(m.rated, units.Torque))
-		}
-		switch r := m.peak / m.rated; {
-		case r > 2:
-			f.add(Warns, m.b, "rated_power", m.tPeak, "peak torque %s is %s times the rated one; most induction motors pull out near 2 to 3 times (common practice)", show(m.peak, units.Torque), units.Number(r, 2))
-		case r > 1.0001:
-			f.add(Note, m.b, "rated_power", m.tPeak, "peak torque %s is above the rated %s for a while; mean square torque %s", show(m.peak, units.Torque), show(m.rated, units.Torque), show(rms, units.Torque))
 		}
 	}
 }

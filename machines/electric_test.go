@@ -5,58 +5,12 @@ import (
 	"math"
 	"math/rand"
 	"slices"
-	"strings"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
 
 	"barlitre/machines/units"
 )
-
-// The table of IEC 60034-30-1 and its interpolation formula were remembered independently of each other; the table is
-// printed to 0.1 %, so half a digit is what can be asked.
-func TestClassTableAgainstFormula(t *testing.T) {
-	for class, row := range classTable {
-		for i, kW := range classRatings {
-			expectAbs(t, fmt.Sprintf("%s %v kW", class, kW), classFormula(row.formula, kW), row.eta[i], 0.0501)
-		}
-	}
-}
-
-func TestEfficiencyClass(t *testing.T) {
-	for _, c := range []struct {
-		class     string
-		kW, eta   float64
-		published bool // read in print, otherwise from memory
-	}{
-		{"IE1", 7.5, 86.0, true}, {"IE1", 11, 87.6, true}, {"IE2", 7.5, 88.7, true}, {"IE2", 11, 89.8, true}, {"IE2", 15, 90.6, true},
-		{"IE3", 7.5, 90.4, true}, {"IE4", 11, 93.3, true},
-		{"ie3", 22, 93.0, false}, {"IE3", 30, 93.6, false}, {"IE3", 11, 91.4, false}, {"IE4", 110, 96.3, false},
-	} {
-		eta, origin, err := EfficiencyClass(c.class, c.kW, 4)
-		if err != nil || strings.Contains(origin, "published") != c.published {
-			t.Errorf("%s %v kW: origin %q, %v", c.class, c.kW, origin, err)
-		}
-		expectAbs(t, fmt.Sprintf("%s %v kW", c.class, c.kW), 100*eta, c.eta, 1e-9)
-	}
-	// Ends of the formula's range, from memory of the standard's table: IE3 82.5 % at 0.75 kW, 96.0 % at 200 kW.
-	for kW, want := range map[float64]float64{0.75: 82.5, 200: 96.0} {
-		eta, origin, err := EfficiencyClass("IE3", kW, 4)
-		if err != nil || !strings.Contains(origin, "formula") {
-			t.Errorf("%v kW: %q, %v", kW, origin, err)
-		}
-		expectAbs(t, "IE3 by formula", 100*eta, want, 0.05)
-	}
-	for _, c := range []struct {
-		class string
-		kW    float64
-		poles int
-	}{{"IE5", 11, 4}, {"", 11, 4}, {"IE3", 11, 2}, {"IE3", 0.5, 4}, {"IE3", 250, 4}, {"IE3", math.NaN(), 4}} {
-		if _, _, err := EfficiencyClass(c.class, c.kW, c.poles); err == nil || !strings.Contains(err.Error(), "name-plate") {
-			t.Errorf("%+v: error %v must ask for the name-plate efficiency", c, err)
-		}
-	}
-}
 
 func ie3Motor22() InductionMotor {
 	return InductionMotor{RatedPower: 22e3, RatedSpeed: 1480 * units.RPM, Efficiency: 0.930, FixedShare: DefaultFixedShare}
@@ -112,7 +66,7 @@ func TestElectricRefusals(t *testing.T) {
 			t.Errorf("accepted %+v", m)
 		}
 	}
-	if DefaultConverter.Check() != nil || (Converter{Linear: -1}).Check() == nil || (Converter{NoLoad: math.NaN()}).Check() == nil {
+	if UsualConverter(22e3).Check() != nil || (Converter{Linear: -1}).Check() == nil || (Converter{NoLoad: math.NaN()}).Check() == nil {
 		t.Error("converter check")
 	}
 }
@@ -130,25 +84,24 @@ var (
 	}
 )
 
-// Tolerance 1 point, where the default holds: 30 hp at every load, 20 to 75 hp from 25 % load up, 100 hp from 42 %
-// up. Where it does not: no-load losses of the table fall with size, so that 5 and 10 hp converters are up to 15
-// and 9 points worse than the default at 1.6 % load (1.7 and 0.7 at full load), and one of 200 hp is 11 points
-// better at 1.6 % and still 1.02 at 42 %.
+// Tolerance 1 point at every load of every row; between 30 and 50 hp between the two rows.
 func TestConverterAgainstTable(t *testing.T) {
 	for _, row := range converterTable {
+		rated := row.hp * units.Horsepower
+		c := UsualConverter(rated)
 		for i, x := range converterLoads {
-			rated := row.hp * units.Horsepower
 			p := x * rated
-			diff := 100*p/(p+DefaultConverter.Loss(-p, rated)) - row.eta[i]
-			if row.hp == 30 || row.hp >= 20 && row.hp <= 75 && x >= 0.25 || row.hp == 100 && x >= 0.42 {
-				expectAbs(t, fmt.Sprintf("%v hp at %v %%", row.hp, 100*x), diff, 0, 1)
-			}
+			expectAbs(t, fmt.Sprintf("%v hp at %v %%", row.hp, 100*x), 100*p/(p+c.Loss(-p, rated)), row.eta[i], 1)
 		}
+	}
+	a, b, c := UsualConverter(30*units.Horsepower), UsualConverter(50*units.Horsepower), UsualConverter(40*units.Horsepower)
+	if !(c.NoLoad > a.NoLoad && c.NoLoad < b.NoLoad) || UsualConverter(1) != UsualConverter(5*units.Horsepower) || UsualConverter(1e6) != UsualConverter(200*units.Horsepower) {
+		t.Error("between and beyond the rows")
 	}
 }
 
-// The defaults are a least-squares fit of efficiency to the 30 hp row; redone here with an independent library:
-// the loss l = x(1/η − 1) is weighted with dη/dl = x/(x + l)².
+// The fit of one row, redone with an independent library: the loss l = x(1/η − 1) is weighted with
+// dη/dl = x/(x + l)², to first order the least squares of efficiency.
 func TestConverterFit(t *testing.T) {
 	i := slices.IndexFunc(converterTable, func(r struct {
 		hp  float64
@@ -168,7 +121,8 @@ func TestConverterFit(t *testing.T) {
 	if err := fit.SolveVec(a, b); err != nil {
 		t.Fatal(err)
 	}
-	expectAbs(t, "no load", fit.AtVec(0), DefaultConverter.NoLoad, 5.1e-5)
-	expectAbs(t, "linear", fit.AtVec(1), DefaultConverter.Linear, 5.1e-5)
-	expectAbs(t, "square", fit.AtVec(2), DefaultConverter.Square, 5.1e-5)
+	c := UsualConverter(30 * units.Horsepower)
+	expectAbs(t, "no load", fit.AtVec(0), c.NoLoad, 2e-4)
+	expectAbs(t, "linear", fit.AtVec(1), c.Linear, 2e-4)
+	expectAbs(t, "square", fit.AtVec(2), c.Square, 2e-4)
 }

@@ -37,6 +37,11 @@ func (s *Station) unsolved(c *audit.CircuitRun) string {
 	return "not solved: see the findings"
 }
 
+// priced reports whether energy or fuel has a price.
+func (s *Station) priced() bool {
+	return !math.IsNaN(s.shown.Tariff.Price) || !math.IsNaN(s.shown.Tariff.Fuel.Price)
+}
+
 // columns are the head of the table.
 func (s *Station) columns() []widgets.Column {
 	u := s.unit().Label()
@@ -46,7 +51,7 @@ func (s *Station) columns() []widgets.Column {
 	}
 	cols = append(cols, widgets.Column{Name: "year", Head: "a year", Unit: audit.YearUnit().Label()},
 		widgets.Column{Name: "share", Head: "of drawn", Unit: "%"})
-	if !math.IsNaN(s.shown.Tariff.Price) {
+	if s.priced() {
 		cols = append(cols, widgets.Column{Name: "money", Head: "a year", Unit: s.shown.Tariff.Currency})
 	}
 	return append(cols, widgets.Column{Name: "driving", Head: "of which\nload drives", Unit: u}, widgets.Column{Name: "working", Head: "while\nworking", Unit: u},
@@ -70,7 +75,7 @@ func (s *Station) tableRow(i int) widgets.TableRow {
 		cells = append(cells, energy(l.row.Energy.Total()))
 	}
 	cells = append(cells, s.known(audit.YearUnit().FromSI(l.row.Year), 4), s.known(units.Percent.FromSI(l.row.Share), 3))
-	if !math.IsNaN(s.shown.Tariff.Price) {
+	if s.priced() {
 		cells = append(cells, s.known(l.row.Money, 4))
 	}
 	e := l.row.Energy

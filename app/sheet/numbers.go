@@ -93,13 +93,15 @@ func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 	if given {
 		return r.number(v.SI, u), r.givenHint(v, u), "", u.Label()
 	}
-	if r.param.Default == "" {
+	b := r.p.block(r.circuit, r.block)
+	if b == nil {
+		return "", "", "", u.Label()
+	}
+	v, _, ok := circuit.KindNamed(b.Kind).Value(b, r.param.Key)
+	if !ok {
 		return "", "not given; " + r.rangeText(u), "", u.Label()
 	}
-	if si, _, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
-		placeholder = r.number(si, u)
-	}
-	return "", "default" + reason(r.param) + "; " + r.rangeText(u), placeholder, u.Label()
+	return "", "default" + reason(v) + "; " + r.rangeText(u), r.number(v.SI, u), u.Label()
 }
 
 // givenHint is what is known of a value besides, and what it may be.

@@ -86,7 +86,7 @@ func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
 		if w := b.Word(q.Key); w != "" || q.Default == "" {
 			return w, q.Text
 		}
-		return q.Default, "default" + reason(q) + join("; ", q.Text)
+		return q.Default, "default" + reason(circuit.Value{Origin: q.Origin, Note: q.Source}) + join("; ", q.Text)
 	}
 	return r
 }
@@ -106,14 +106,14 @@ func join(link, text string) string {
 }
 
 // reason is why a default is what it is.
-func reason(q *circuit.Param) string {
+func reason(v circuit.Value) string {
 	switch {
-	case q.Source == "":
+	case v.Note == "":
 		return ""
-	case q.Origin == circuit.NotStated:
-		return ": " + q.Source
+	case v.Origin == circuit.NotStated:
+		return ": " + v.Note
 	}
-	return ", " + string(q.Origin) + ": " + q.Source
+	return ", " + string(v.Origin) + ": " + v.Note
 }
 
 // block is a block of the present file, or nil.

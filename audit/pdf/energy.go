@@ -42,6 +42,10 @@ func (l *layout) energy() {
 			t := fromReport(d.Losses)
 			t.title += ": " + d.Name
 			l.table(t)
+			if g := fromReport(d.Gates); len(g.rows) > 0 {
+				g.title += ": " + d.Name
+				l.table(g)
+			}
 		}
 	}
 	for _, d := range l.s.File.Duties {

@@ -74,10 +74,14 @@ func (l *layout) inputs() table {
 	word("density in use", units.Format(c.Density, units.Preferred(units.Density, l.r.System), 4), derived)
 	word("dynamic viscosity in use", units.Format(c.Viscosity, units.Preferred(units.DynamicViscosity, l.r.System), 4), derived)
 	value("air temperature", f.HasAir, f.Air)
-	if f.HasPrice || f.HasCO2 {
+	if f.HasPrice || f.HasCO2 || f.HasFuelPrice || f.HasFuelCO2 {
 		group("Energy")
 		value("price of energy", f.HasPrice, f.Price)
 		value("CO2 of energy drawn", f.HasCO2, f.CO2)
+		value("price of fuel", f.HasFuelPrice, f.FuelPrice)
+		value("CO2 of fuel", f.HasFuelCO2, f.FuelCO2)
+		value("density of fuel", f.HasFuelDensity, f.FuelDensity)
+		value("heating value of fuel", f.HasFuelHeating, f.FuelHeating)
 	}
 	if len(f.Duties) > 0 {
 		group("Duties")

@@ -98,6 +98,13 @@ const (
 	PowerPrice                       // money per W
 	VolumePrice                      // money per m³
 	CO2Factor                        // kg/J
+	MassPrice                        // money per kg
+	Voltage                          // V
+	Current                          // A
+	TorqueConstant                   // N m/A
+	ElectricResistance               // Ω
+	Frequency                        // Hz
+	SpecificEnergy                   // J/kg: heating value
 	dimCount
 )
 

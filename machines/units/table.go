@@ -125,6 +125,16 @@ var quantities = [dimCount]quantity{
 	CO2Factor: {name: "CO2 factor", preferred: [3]string{"kg/kWh", "kg/kWh", "kg/J"}, num: Mass, den: Energy, units: []entry{
 		{"kg/kWh", 1 / KilowattHour, Metric, nil}, {"g/kWh", 1e-3 / KilowattHour, Metric, nil}, {"kg/MWh", 1e-3 / KilowattHour, Metric, al("t/GWh")},
 		{"kg/MJ", 1e-6, Metric, nil}, {"kg/J", 1, SI, nil}}},
+	MassPrice: {name: "price by mass", preferred: [3]string{"EUR/kg", "USD/lb", "EUR/kg"}, num: Money, den: Mass},
+	Voltage:   {name: "voltage", preferred: [3]string{"V", "V", "V"}, units: []entry{{"V", 1, SI, nil}, {"kV", 1e3, Metric, nil}}},
+	Current:   {name: "current", preferred: [3]string{"A", "A", "A"}, units: []entry{{"A", 1, SI, nil}, {"mA", 1e-3, Metric, nil}, {"kA", 1e3, Metric, nil}}},
+	TorqueConstant: {name: "torque constant", preferred: [3]string{"N m/A", "lbf ft/A", "N m/A"}, num: Torque, den: Current,
+		units: []entry{{"N m/A", 1, SI, al("Nm/A")}, {"lbf ft/A", Foot * LbForce, US, nil}}},
+	ElectricResistance: {name: "electric resistance", preferred: [3]string{"ohm", "ohm", "ohm"}, units: []entry{
+		{"ohm", 1, SI, al("Ω", "Ohm")}, {"mohm", 1e-3, Metric, al("mΩ")}}},
+	Frequency: {name: "frequency", preferred: [3]string{"Hz", "Hz", "Hz"}, units: []entry{{"Hz", 1, SI, nil}}},
+	SpecificEnergy: {name: "heating value", preferred: [3]string{"MJ/kg", "Btu/lb", "J/kg"}, num: Energy, den: Mass, units: []entry{
+		{"MJ/kg", 1e6, Metric, nil}, {"kWh/kg", KilowattHour, Metric, nil}, {"Btu/lb", Btu / Pound, US, nil}, {"J/kg", 1, SI, nil}}},
 }
 
 func (e entry) unit(d Dim) Unit {
