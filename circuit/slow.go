@@ -141,10 +141,10 @@ func (c *Compiled) HasSlowStates() bool { return len(c.slow) > 0 }
 // true period to the receiver: one cycle, or as many as it takes until the states
 // are what they were (a charging valve may switch only every other cycle). Times run on
 // from cycle to cycle. It returns how many cycles the period has. Circuits without
-// slow states are run once.
+// slow states are run once, as by RunParallel.
 func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Series, cond Conditions, to Receiver) (cycles int, st State, cert Certificate, err error) {
 	if !c.HasSlowStates() {
-		st, cert, err = Run(ctx, c, params, s, cond, State{}, to)
+		st, cert, err = RunParallel(ctx, c, params, s, cond, 0, to)
 		return 1, st, cert, err
 	}
 	var past [][]float64
@@ -173,11 +173,11 @@ func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Ser
 	length := s.T[len(s.T)-1] - s.T[0]
 	for n := 0; n < cycles; n++ {
 		later := *s
-		later.T = make([]float64, len(s.T))
-		for i, t := range s.T {
-			later.T[i] = t + float64(n)*length
-		}
 		if n > 0 {
+			later.T = make([]float64, len(s.T))
+			for i, t := range s.T {
+				later.T[i] = t + float64(n)*length
+			}
 			st.lastT = later.T[0]
 		} else {
 			st.begun = false // the first point of the period has no time before it
@@ -190,6 +190,7 @@ func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Ser
 		}
 		total = total.plus(one)
 	}
+	total.Sequential = c.sequential(s)
 	return cycles, st, total, err
 }
 
