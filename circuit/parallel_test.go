@@ -75,7 +75,7 @@ func TestChunksOnManyGoroutines(t *testing.T) {
 	}{
 		{"C1", c1, ramAxis, ramDuty, 0, false},
 		{"C1 falls behind", c1, ramAxis, ramDuty, 60e5, false},
-		{"C1 falls behind, ends far", stroked("90 m", "40 m"), ramAxis, ramDuty, 60e5, false},
+		{"C1 falls behind, ends far", stroked("30 m", "15 m"), ramAxis, ramDuty, 60e5, false},
 		{"C1 falls behind, to an end", stroked("900 mm", "300 mm"), ramAxis, ramDuty, 60e5, true},
 		{"C3", c3, trialAxes, bothDuty, 0, false},
 	} {

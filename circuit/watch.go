@@ -16,7 +16,6 @@ type Watch struct {
 	steps  int
 	cycles int // that are over
 	lastT  float64
-	weight float64 // half the time since the step before
 	ext    []extreme
 	axes   []axisWatch
 	motors []motorWatch
@@ -109,7 +108,7 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 		case kindRelief:
 			w.reds = append(w.reds, reliefWatch{b: b, flow: get(b.ID + ".P.q"), p: get(b.ID + ".P.p")})
 		case kindPump, kindChargePump, kindHydraulicMotor, kindFlowDivider:
-			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1)}
+			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1), slow: math.Inf(1)}
 			if b.Kind == kindHydraulicMotor {
 				m.pP, m.pS = get(b.ID+".A.p"), get(b.ID+".B.p")
 			}
@@ -151,6 +150,11 @@ func (w *Watch) value(b *Block, key string) float64 {
 
 // Sample takes one time step.
 func (w *Watch) Sample(s *Sample) error {
+	w.take(s)
+	return nil
+}
+
+func (w *Watch) take(s *Sample) {
 	dt := 0.0
 	if w.steps > 0 {
 		dt = s.T - w.lastT
@@ -159,7 +163,7 @@ func (w *Watch) Sample(s *Sample) error {
 	w.steps++
 	w.span += dt
 	if s.Unbalanced {
-		return nil // its numbers mean nothing
+		return // its numbers mean nothing
 	}
 	for i, v := range s.Signals {
 		e := &w.ext[i]
@@ -212,7 +216,6 @@ func (w *Watch) Sample(s *Sample) error {
 		w.starts++
 	}
 	w.stop = s.Stopped
-	return nil
 }
 
 // A demand counts as met when the speed is within a thousandth of it.
@@ -283,7 +286,7 @@ func (m *machineWatch) take(s *Sample, dt float64) {
 		dp -= s.Signals[m.pS]
 	}
 	slow := m.min > 0 && v < m.min && math.Abs(dp) > 5*units.Bar
-	if slow && (m.slowTime == 0 || v < m.slow) {
+	if slow && v < m.slow {
 		m.slow, m.tSlow = v, s.T
 	}
 	if slow && m.lastSlow {
