@@ -2,6 +2,8 @@ package circuit
 
 import (
 	"math"
+	"slices"
+	"sort"
 
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
@@ -344,18 +346,14 @@ func (w *Watch) PeakPressure() Peak {
 // pressure found without its compression is too high.
 func (w *Watch) fastRamp(t float64) bool {
 	const window = 0.1
+	T := w.series.T
+	from := sort.SearchFloat64s(T, t-window)
+	to := from + sort.Search(len(T)-from, func(i int) bool { return T[from+i] > t+window })
 	for _, a := range w.series.Axes {
-		if a.Load == nil {
+		if a.Load == nil || from == to {
 			continue
 		}
-		lo, hi, top := math.Inf(1), math.Inf(-1), 0.0
-		for k, f := range a.Load {
-			top = math.Max(top, math.Abs(f))
-			if math.Abs(w.series.T[k]-t) <= window {
-				lo, hi = math.Min(lo, f), math.Max(hi, f)
-			}
-		}
-		if hi-lo > 0.2*top {
+		if near := a.Load[from:to]; slices.Max(near)-slices.Min(near) > 0.2*a.TopLoad {
 			return true
 		}
 	}
