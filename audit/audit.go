@@ -217,7 +217,6 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 		j.note(r.Duty.Name, []circuit.Finding{{Level: circuit.Warns, Text: err.Error()}})
 		err = nil
 	}
-	j.progress.add(progressParts - counter.passed)
 	if table != nil {
 		if failed := table.close(); failed != nil {
 			return failed
@@ -226,6 +225,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	if ctx.Err() != nil {
 		return ctx.Err()
 	}
+	j.progress.add(progressParts - counter.passed)
 	if err != nil {
 		j.note(r.Duty.Name, []circuit.Finding{{Level: circuit.Stops, Text: err.Error()}})
 		return nil
