@@ -67,6 +67,7 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 	ctx, cancel := context.WithCancel(ctx)
 	defer cancel()
 	p := &progress{tell: opt.Progress, total: progressParts * len(f.Circuits) * len(f.Duties)}
+	laid := &layouts{}
 	errs := make([]error, len(s.Circuits))
 	room := make(chan struct{}, runtime.GOMAXPROCS(0))
 	var wg sync.WaitGroup
@@ -76,7 +77,7 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 			defer wg.Done()
 			room <- struct{}{}
 			defer func() { <-room }()
-			j := &job{solution: s, run: c, number: i + 1, progress: p, csv: opt.CSV}
+			j := &job{solution: s, run: c, number: i + 1, progress: p, layouts: laid, csv: opt.CSV}
 			if errs[i] = j.solve(ctx); errs[i] != nil {
 				cancel()
 			}
@@ -115,6 +116,7 @@ type job struct {
 	run      *CircuitRun
 	number   int
 	progress *progress
+	layouts  *layouts
 	csv      func(string) (io.WriteCloser, error)
 }
 
@@ -192,19 +194,15 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 		j.progress.add(progressParts)
 		return nil
 	}
-	params, series := c.Defaults(), c.Series(r.Duty)
+	params, series := c.Defaults(), j.layouts.series(c, r.Duty)
 	steps := len(series.T)
 	ledger := NewLedger(c.Channels(), ShaftSignals(j.run.Circuit, c.Signals()), steps)
 	watch, plot := c.NewWatch(params, series), newRecorder(c.Signals(), c.Channels(), steps)
-	counter := &stepCounter{progress: j.progress, of: steps}
+	counter := &stepCounter{progress: j.progress, of: steps, open: c.HasSlowStates() && r.Duty.Repeats}
 	operation := newOperation(j.run.Circuit, c.Signals())
 	receivers := circuit.Receivers{ledger, watch, plot, counter, operation}
-	if c.HasSlowStates() {
-		// Instants of switching add steps, and a period may be several cycles: the plot
-		// keeps the first of them whole.
-		plot = newRecorder(c.Signals(), c.Channels(), steps)
-		plot.plot.Thinned = false
-		receivers = circuit.Receivers{ledger, watch, &until{plot, series.T[steps-1]}, operation}
+	if c.HasSlowStates() { // a period may be several cycles: the plot keeps the first of them
+		receivers[2] = &until{plot, series.T[steps-1]}
 	}
 	table, err := j.openTable(c, r, number)
 	if err != nil {
@@ -215,15 +213,14 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	}
 	cycles, cert, err := 1, circuit.Certificate{}, error(nil)
 	if r.Duty.Repeats {
-		cycles, _, cert, err = circuit.RunPeriodic(ctx, c, params, series, j.solution.Conditions, receivers)
+		cycles, _, cert, err = circuit.RunPeriodic(ctx, c, params, series, j.solution.Conditions, counter, receivers)
 	} else {
-		_, cert, err = circuit.Run(ctx, c, params, series, j.solution.Conditions, circuit.State{}, receivers)
+		_, cert, err = circuit.RunParallel(ctx, c, params, series, j.solution.Conditions, 0, receivers)
 	}
 	if errors.Is(err, circuit.ErrNoPeriod) {
 		j.note(r.Duty.Name, []circuit.Finding{{Level: circuit.Warns, Text: err.Error()}})
 		err = nil
 	}
-	j.progress.add(progressParts - counter.passed)
 	if table != nil {
 		if failed := table.close(); failed != nil {
 			return failed
@@ -232,69 +229,16 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	if ctx.Err() != nil {
 		return ctx.Err()
 	}
+	j.progress.add(progressParts - counter.passed)
 	if err != nil {
 		j.note(r.Duty.Name, []circuit.Finding{{Level: circuit.Stops, Text: err.Error()}})
 		return nil
 	}
-	r.Certificate, r.Plot = cert, plot.plot
+	r.Certificate, r.Plot = cert, plot.done()
 	r.Cycles = cycles
 	r.Peak, r.Shortfalls, r.Gates = watch.PeakPressure(), watch.Shortfalls(cycles), watch.Gates()
 	r.Operating = operation.all()
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())
-	return nil
-}
-
-// until passes time steps up to a time on.
-type until struct {
-	to   circuit.Receiver
-	last float64
-}
-
-// Sample passes s on while its time has not come.
-func (u *until) Sample(s *circuit.Sample) error {
-	if s.T > u.last {
-		return nil
-	}
-	return u.to.Sample(s)
-}
-
-// tableFile is a table with the file below it. It remembers its first error and
-// lets the run go on to its end.
-type tableFile struct {
-	*StepTable
-	name string
-	file io.Closer
-	err  error
-}
-
-func (j *job) openTable(c *circuit.Compiled, r *DutyRun, number int) (*tableFile, error) {
-	if j.csv == nil {
-		return nil, nil
-	}
-	name := TableName(j.number, j.run.Circuit.Name, number, r.Duty.Name)
-	w, err := j.csv(name)
-	if err != nil {
-		return nil, fmt.Errorf("open %s: %w", name, err)
-	}
-	t, err := NewStepTable(w, c.Signals())
-	if err != nil {
-		return nil, errors.Join(fmt.Errorf("%s: %w", name, err), w.Close())
-	}
-	return &tableFile{StepTable: t, name: name, file: w}, nil
-}
-
-// Sample writes one row, unless an earlier one could not be written.
-func (t *tableFile) Sample(s *circuit.Sample) error {
-	if t.err == nil {
-		t.err = t.StepTable.Sample(s)
-	}
-	return nil
-}
-
-func (t *tableFile) close() error {
-	if err := errors.Join(t.err, t.StepTable.Close(), t.file.Close()); err != nil {
-		return fmt.Errorf("%s: %w", t.name, err)
-	}
 	return nil
 }

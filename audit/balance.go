@@ -45,24 +45,23 @@ type Balance struct {
 
 // Balance closes the ledger. repeats says whether the cycle repeats without pause.
 func (l *Ledger) Balance(repeats bool) *Balance {
+	l.bookLast()
 	base := len(l.channels)
 	b := &Balance{
-		Steps:    len(l.t),
-		Seconds:  l.items[base+itemSeconds],
-		SupplyIn: l.items[base+itemSupplyIn],
-		Returned: l.items[base+itemReturned],
-		Fuel:     l.items[base+itemFuel],
-		Demand:   demand(l.t, l.supply, repeats, DemandWindow),
+		Steps:    l.steps,
+		Cycle:    l.at - l.from,
+		Seconds:  l.item(base + itemSeconds),
+		SupplyIn: l.item(base + itemSupplyIn),
+		Returned: l.item(base + itemReturned),
+		Fuel:     l.item(base + itemFuel),
+		Demand:   l.mean.demand(repeats),
 
 		PeakSupply: l.drawn.value, PeakSupplyAt: l.drawn.at,
 		PeakShaft: l.shaft.value, PeakShaftAt: l.shaft.at,
 		WorstGap: l.gap.value, WorstGapAt: l.gap.at,
 	}
-	if len(l.t) > 0 {
-		b.Cycle = l.t[len(l.t)-1] - l.t[0]
-	}
 	for i, c := range l.channels {
-		row := LossRow{Block: c.Block, Kind: c.Kind, Sink: c.Sink, Energy: l.items[i]}
+		row := LossRow{Block: c.Block, Kind: c.Kind, Sink: c.Sink, Energy: l.item(i)}
 		switch c.Role {
 		case circuit.Loss:
 			b.Losses = append(b.Losses, row)
@@ -72,7 +71,7 @@ func (l *Ledger) Balance(repeats bool) *Balance {
 	}
 	for a, name := range l.axes {
 		at := base + itemWork + 2*a
-		b.Work = append(b.Work, WorkRow{Axis: name, Positive: l.items[at], Negative: l.items[at+1]})
+		b.Work = append(b.Work, WorkRow{Axis: name, Positive: l.item(at), Negative: l.item(at + 1)})
 	}
 	return b
 }

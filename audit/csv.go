@@ -16,33 +16,54 @@ import (
 // `RV1.P.p [Pa]`, `RV1.P.q [m3/s]`, `C1.v [m/s]`; a plain number has no bracket. Two
 // rows at one time are the two sides of a step.
 type StepTable struct {
-	w   *csv.Writer
-	row []string
+	w       io.Writer
+	columns int
+	rows    []byte // not yet written
 }
+
+// tableBuffer is how many bytes are written at once.
+const tableBuffer = 1 << 16
 
 // NewStepTable writes the head.
 func NewStepTable(w io.Writer, signals []circuit.Signal) (*StepTable, error) {
-	t := &StepTable{w: csv.NewWriter(w), row: make([]string, 1+len(signals))}
-	t.row[0] = "t [s]"
-	for i, s := range signals {
-		t.row[1+i] = s.Name
+	head := []string{"t [s]"}
+	for _, s := range signals {
+		name := s.Name
 		if u := units.Preferred(s.Dim, units.SI).Symbol; u != "" {
-			t.row[1+i] += " [" + u + "]"
+			name += " [" + u + "]"
 		}
+		head = append(head, name)
 	}
-	if err := t.w.Write(t.row); err != nil {
+	c := csv.NewWriter(w)
+	_ = c.Write(head)
+	c.Flush()
+	if err := c.Error(); err != nil {
 		return nil, fmt.Errorf("write table: %w", err)
 	}
-	return t, nil
+	return &StepTable{w: w, columns: len(head)}, nil
 }
 
 // Sample writes one row. Numbers have as many digits as it takes to read them back unchanged.
 func (t *StepTable) Sample(s *circuit.Sample) error {
-	t.row[0] = strconv.FormatFloat(s.T, 'g', -1, 64)
-	for i, v := range s.Signals {
-		t.row[1+i] = strconv.FormatFloat(v, 'g', -1, 64)
+	t.rows = strconv.AppendFloat(t.rows, s.T, 'g', -1, 64)
+	for _, v := range s.Signals {
+		t.rows = strconv.AppendFloat(append(t.rows, ','), v, 'g', -1, 64)
 	}
-	if err := t.w.Write(t.row); err != nil {
+	t.rows = append(t.rows, '\n')
+	if t.w != nil && len(t.rows) >= tableBuffer {
+		return t.Close()
+	}
+	return nil
+}
+
+// Part keeps its rows until their turn comes.
+func (t *StepTable) Part(from, to int, _ *circuit.Sample) circuit.Receiver {
+	return &StepTable{rows: make([]byte, 0, 20*t.columns*(to-from))}
+}
+
+// Join writes the rows of a part.
+func (t *StepTable) Join(part circuit.Receiver) error {
+	if _, err := t.w.Write(part.(*StepTable).rows); err != nil {
 		return fmt.Errorf("write table: %w", err)
 	}
 	return nil
@@ -50,8 +71,9 @@ func (t *StepTable) Sample(s *circuit.Sample) error {
 
 // Close writes what is buffered; it does not close the writer below.
 func (t *StepTable) Close() error {
-	t.w.Flush()
-	if err := t.w.Error(); err != nil {
+	_, err := t.w.Write(t.rows)
+	t.rows = t.rows[:0]
+	if err != nil {
 		return fmt.Errorf("write table: %w", err)
 	}
 	return nil

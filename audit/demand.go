@@ -1,9 +1,6 @@
 package audit
 
-import (
-	"math"
-	"sort"
-)
+import "math"
 
 // DemandWindow is the time over which supply companies average power [s].
 // Common practice in Europe and North America; a tariff may state another.
@@ -27,95 +24,64 @@ type Demand struct {
 	Basis DemandBasis
 }
 
-// demand finds the window of largest mean power over the powers p [W] at times t
-// [s], the drawn part of p being linear between time steps. The mean is exact: a window's energy is a quadratic in its
-// start between any two instants at which one of its ends passes a time step, so
-// the largest lies at such an instant or at the crest of one of the quadratics.
-func demand(t, p []float64, repeats bool, window float64) Demand {
-	if len(t) < 2 || t[len(t)-1] <= t[0] {
+// powerAt is a power at a time [s, W].
+type powerAt struct{ t, p float64 }
+
+// meanMeter finds the window of largest mean power over points as they come, in the
+// order of time; the drawn part of the power is linear between them. Only what the
+// window needs is kept.
+type meanMeter struct {
+	window float64 // s
+	from   float64 // s, first point; inside, times count from it
+	length float64 // s
+	total  float64 // J
+	last   powerAt
+	head   []powerAt // up to the first one a window after the start
+	scan   scan
+}
+
+// newMeanMeter makes a meter; the first so many points are taken without an allocation.
+func newMeanMeter(window float64, points int) *meanMeter {
+	return &meanMeter{window: window, head: make([]powerAt, 0, min(points, 1<<16)), scan: scan{window: window}}
+}
+
+// take takes the next point.
+func (m *meanMeter) take(x powerAt) {
+	if len(m.head) == 0 {
+		m.from = x.t
+	}
+	x.t, x.p = x.t-m.from, math.Max(x.p, 0)
+	if len(m.head) > 0 {
+		m.total += (x.t - m.last.t) * (m.last.p + x.p) / 2
+	}
+	if len(m.head) == 0 || m.last.t < m.window {
+		m.head = append(m.head, x)
+	}
+	m.scan.take(x)
+	m.length, m.last = x.t, x
+}
+
+// demand returns the largest mean; repeats says whether the points are a cycle that
+// repeats without pause.
+func (m *meanMeter) demand(repeats bool) Demand {
+	switch {
+	case m.length <= 0:
 		return Demand{Basis: ShorterThanIt}
+	case !repeats && m.window > m.length:
+		return Demand{Mean: m.total / m.window, From: m.from, Basis: ShorterThanIt}
+	case !repeats:
+		return Demand{Mean: m.scan.most / m.window, From: m.from + m.scan.at, Basis: InRecording}
 	}
-	c := newCourse(t, p)
-	if !repeats {
-		if window > c.length {
-			return Demand{Mean: c.total() / window, From: t[0], Basis: ShorterThanIt}
-		}
-		start, e := c.largest(window, c.length-window)
-		return Demand{Mean: e / window, From: t[0] + start, Basis: InRecording}
-	}
-	n := math.Floor(window / c.length)
-	rest := window - n*c.length
-	start, e := c.largest(rest, c.length)
-	return Demand{Mean: (n*c.total() + e) / window, From: t[0] + start, Basis: OverRepeats}
-}
-
-// course is a power over time with its running integral, repeated for ever.
-type course struct {
-	t, p   []float64 // t from 0
-	e      []float64 // J, integral up to t
-	length float64
-}
-
-func newCourse(t, p []float64) *course {
-	n := len(t)
-	c := &course{t: make([]float64, n), p: make([]float64, n), e: make([]float64, n)}
-	for k := range t {
-		c.t[k], c.p[k] = t[k]-t[0], math.Max(p[k], 0)
-		if k > 0 {
-			c.e[k] = c.e[k-1] + (c.p[k]+c.p[k-1])/2*(c.t[k]-c.t[k-1])
+	cycles := math.Floor(m.window / m.length)
+	s := m.scan.clone()
+	if cycles > 0 { // the window is whole cycles, and a rest of one
+		s = &scan{window: m.window - cycles*m.length}
+		for _, x := range m.head {
+			s.take(x)
 		}
 	}
-	c.length = c.t[n-1]
-	return c
-}
-
-func (c *course) total() float64 { return c.e[len(c.e)-1] }
-
-// energy returns the integral from 0 to x >= 0 [J].
-func (c *course) energy(x float64) float64 {
-	n := math.Floor(x / c.length)
-	x -= n * c.length
-	k := sort.SearchFloat64s(c.t, x) // t[k-1] < x <= t[k]
-	e := n * c.total()
-	if k == 0 {
-		return e
+	for _, x := range m.head {
+		s.take(powerAt{m.length + x.t, x.p})
 	}
-	k = min(k, len(c.t)-1)
-	h, s := c.t[k]-c.t[k-1], x-c.t[k-1]
-	return e + c.e[k-1] + s*(c.p[k-1]+(c.p[k]-c.p[k-1])*s/h/2)
-}
-
-// largest returns the start in [0, last] of the window of the given length with
-// the most energy, and that energy [J].
-func (c *course) largest(window, last float64) (start, energy float64) {
-	in := func(x float64) float64 { return c.energy(x+window) - c.energy(x) }
-	starts := make([]float64, 0, 2*len(c.t)+2)
-	starts = append(starts, 0, last)
-	for _, t := range c.t {
-		starts = append(starts, t)
-		if x := t - window; x >= 0 {
-			starts = append(starts, x)
-		} else {
-			starts = append(starts, x+c.length)
-		}
-	}
-	sort.Float64s(starts)
-	energy = math.Inf(-1)
-	try := func(x float64) {
-		if e := in(x); x >= 0 && x <= last && e > energy {
-			start, energy = x, e
-		}
-	}
-	for i, a := range starts {
-		try(a)
-		if i+1 < len(starts) && starts[i+1] > a {
-			b := starts[i+1]
-			// the quadratic through both ends and the middle
-			ga, gm, gb := in(a), in((a+b)/2), in(b)
-			if bend := ga - 2*gm + gb; bend < 0 {
-				try((a+b)/2 + (b-a)*(ga-gb)/bend/4)
-			}
-		}
-	}
-	return start, energy
+	return Demand{Mean: (cycles*m.total + s.most) / m.window, From: m.from + s.at, Basis: OverRepeats}
 }

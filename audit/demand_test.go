@@ -6,6 +6,15 @@ import (
 	"testing"
 )
 
+// demand hands a meter the points one by one.
+func demand(t, p []float64, repeats bool, window float64) Demand {
+	m := newMeanMeter(window, 0)
+	for k := range t {
+		m.take(powerAt{t[k], p[k]})
+	}
+	return m.demand(repeats)
+}
+
 // bruteDemand scans starts densely and integrates by small rectangles at midpoints.
 func bruteDemand(t, p []float64, repeats bool, window float64) float64 {
 	length := t[len(t)-1] - t[0]

@@ -35,21 +35,6 @@ func (s Split) Plus(o Split) Split {
 	return Split{s.Working + o.Working, s.Holding + o.Holding, s.Idle + o.Idle, s.Driving + o.Driving}
 }
 
-// book adds x to the part of mode m.
-func (s *Split) book(x float64, m mode, driving bool) {
-	switch m {
-	case working:
-		s.Working += x
-	case holding:
-		s.Holding += x
-	default:
-		s.Idle += x
-	}
-	if driving {
-		s.Driving += x
-	}
-}
-
 // Ledger books the energy of one run: a circuit.Receiver. A power is integrated by
 // the trapezoid rule; written with weights, time step k counts
 //
@@ -64,20 +49,36 @@ func (s *Split) book(x float64, m mode, driving bool) {
 // split by sign axis by axis.
 type Ledger struct {
 	channels []circuit.Channel
-	axes     []string // of the work channels
-	axisOf   []int    // by channel; −1 when it is not work
-	shafts   []int    // signals that make up the shaft power of the prime movers
+	sides    []float64 // 1 for a channel that supplies, −1 for any other
+	supplies []int     // channels of the prime movers
+	fuels    []int     // those of them that burn fuel
+	works    []int     // channels of work
+	axes     []string  // of the work channels
+	axisOf   []int     // by place in works
+	shafts   []int     // signals that make up the shaft power of the prime movers
 
-	items     []Split   // booked: channels, then seconds, supply in, returned, fuel, work + and − by axis
-	now, last []float64 // W, by item
-	lastMode  mode
-	lastDrive bool
+	sums          [situations][]float64 // J booked in each situation, by item
+	now, last     []float64             // W, by item: channels, then seconds, supply in, returned, fuel, work + and − by axis
+	lastSituation situation
+	weight        float64 // s that the last step counts so far
+	begun         bool    // there is a step before the next
+	steps         int
+	from, at      float64 // s, first and last time step
 
-	t, supply []float64 // s, W from the mains, by time step: the 15-minute mean needs the course
-	shaft     peak
-	drawn     peak
-	gap       peak // W, largest |supply − work − stored − losses| of a time step
+	mean   *meanMeter // of the mains; nil in a part, which keeps its course
+	course []powerAt  // s, W
+	shaft  peak
+	drawn  peak
+	gap    peak // W, largest |supply − work − stored − losses| of a time step
 }
+
+// situation is a mode, with whileDriven added while the load drives an axis.
+type situation int
+
+const (
+	whileDriven = situation(idle) + 1
+	situations  = 2 * whileDriven
+)
 
 // peak is the largest value met, and when.
 type peak struct{ value, at float64 }
@@ -102,24 +103,39 @@ const (
 // (ShaftSignals finds them); steps is the number of time steps to come: up to
 // that many are booked without an allocation.
 func NewLedger(channels []circuit.Channel, shafts []int, steps int) *Ledger {
-	l := &Ledger{channels: channels, shafts: shafts, axisOf: make([]int, len(channels))}
+	l := newLedger(channels, shafts)
+	l.mean = newMeanMeter(DemandWindow, steps)
+	return l
+}
+
+func newLedger(channels []circuit.Channel, shafts []int) *Ledger {
+	l := &Ledger{channels: channels, shafts: shafts}
 	axis := map[string]int{}
 	for i, c := range channels {
-		l.axisOf[i] = -1
-		if c.Role == circuit.Work {
+		side := -1.0
+		switch c.Role {
+		case circuit.Supply:
+			side = 1
+			l.supplies = append(l.supplies, i)
+			if isFuel(c) {
+				l.fuels = append(l.fuels, i)
+			}
+		case circuit.Work:
 			a, ok := axis[c.Kind]
 			if !ok {
 				a = len(l.axes)
 				axis[c.Kind] = a
 				l.axes = append(l.axes, c.Kind)
 			}
-			l.axisOf[i] = a
+			l.works, l.axisOf = append(l.works, i), append(l.axisOf, a)
 		}
+		l.sides = append(l.sides, side)
 	}
 	n := len(channels) + itemWork + 2*len(l.axes)
-	l.items = make([]Split, n)
+	for i := range l.sums {
+		l.sums[i] = make([]float64, n)
+	}
 	l.now, l.last = make([]float64, n), make([]float64, n)
-	l.t, l.supply = make([]float64, 0, steps), make([]float64, 0, steps)
 	return l
 }
 
@@ -129,28 +145,33 @@ func (l *Ledger) Sample(s *circuit.Sample) error {
 	if len(s.Power) != len(l.channels) {
 		return fmt.Errorf("energy balance: %d powers at %g s, expected %d", len(s.Power), s.T, len(l.channels))
 	}
-	first := len(l.t) == 0
-	dt := 0.0
-	if !first {
-		if dt = s.T - l.t[len(l.t)-1]; !(dt >= 0) {
-			return fmt.Errorf("energy balance: time runs backwards from %g s to %g s", l.t[len(l.t)-1], s.T)
-		}
-	}
 	net, mains, gap, err := l.powers(s)
 	if err != nil {
 		return err
 	}
-	m := modeOf(s)
-	if dt > 0 {
-		for i := range l.items {
-			l.items[i].book(l.last[i]*dt/2, l.lastMode, l.lastDrive)
-			l.items[i].book(l.now[i]*dt/2, m, s.Driving)
-		}
+	first := l.steps == 0
+	if first {
+		l.from = s.T
 	}
-	l.pulses(s, m)
+	if l.begun {
+		dt := s.T - l.at
+		if !(dt >= 0) {
+			return fmt.Errorf("energy balance: time runs backwards from %g s to %g s", l.at, s.T)
+		}
+		l.weight += dt / 2
+		l.bookLast()
+		l.weight = dt / 2
+	}
+	l.pulses(s)
 	l.last, l.now = l.now, l.last
-	l.lastMode, l.lastDrive = m, s.Driving
-	l.t, l.supply = append(l.t, s.T), append(l.supply, mains)
+	l.lastSituation, l.at = situationOf(s), s.T
+	l.begun = true
+	l.steps++
+	if l.mean != nil {
+		l.mean.take(powerAt{s.T, mains})
+	} else {
+		l.course = append(l.course, powerAt{s.T, mains})
+	}
 	l.drawn.meet(net, s.T, first)
 	l.gap.meet(gap, s.T, first)
 	shaft := 0.0
@@ -165,58 +186,118 @@ func (l *Ledger) Sample(s *circuit.Sample) error {
 func isFuel(c circuit.Channel) bool { return c.Role == circuit.Supply && c.Kind == "fuel" }
 
 // pulses books what a time step draws and loses at once, such as the start of a motor.
-func (l *Ledger) pulses(s *circuit.Sample, m mode) {
-	base := len(l.channels)
+func (l *Ledger) pulses(s *circuit.Sample) {
+	base, sums := len(l.channels), l.sums[situationOf(s)]
 	for i, e := range s.Pulse {
 		if e == 0 {
 			continue
 		}
-		l.items[i].book(e, m, s.Driving)
+		sums[i] += e
 		if l.channels[i].Role == circuit.Supply {
-			l.items[base+itemSupplyIn].book(e, m, s.Driving)
+			sums[base+itemSupplyIn] += e
 		}
 		if isFuel(l.channels[i]) {
-			l.items[base+itemFuel].book(e, m, s.Driving)
+			sums[base+itemFuel] += e
 		}
 	}
+}
+
+// bookLast books what the last time step counts so far.
+func (l *Ledger) bookLast() {
+	if l.weight > 0 {
+		sums := l.sums[l.lastSituation]
+		for i, p := range l.last[:len(sums)] {
+			sums[i] += p * l.weight
+		}
+	}
+	l.weight = 0
+}
+
+// item is the energy booked under an item.
+func (l *Ledger) item(i int) Split {
+	of := func(m mode, driving situation) float64 { return l.sums[situation(m)+driving][i] }
+	all := func(m mode) float64 { return of(m, 0) + of(m, whileDriven) }
+	return Split{Working: all(working), Holding: all(holding), Idle: all(idle),
+		Driving: of(working, whileDriven) + of(holding, whileDriven) + of(idle, whileDriven)}
 }
 
 // powers fills now with the power of every item, and returns the supply, that part of it which is
 // from the mains, and what the powers lack to balance [W].
 func (l *Ledger) powers(s *circuit.Sample) (net, mains, gap float64, err error) {
-	base := len(l.channels)
-	for i := base; i < len(l.now); i++ {
-		l.now[i] = 0
-	}
-	l.now[base+itemSeconds] = 1
-	work := l.now[base+itemWork:]
+	base := copy(l.now, s.Power)
 	for i, p := range s.Power {
-		c := l.channels[i]
-		if math.IsNaN(p) || math.IsInf(p, 0) {
-			return 0, 0, 0, fmt.Errorf("energy balance: %s of %s is not a number at %g s", c.Kind, c.Block, s.T)
-		}
-		l.now[i] = p
-		switch c.Role {
-		case circuit.Supply:
-			net += p
-			gap += p
-			if !isFuel(c) {
-				mains += p
+		gap += l.sides[i] * p
+	}
+	if gap-gap != 0 { // one of them is not finite
+		for i, p := range s.Power {
+			if math.IsNaN(p) || math.IsInf(p, 0) {
+				return 0, 0, 0, fmt.Errorf("energy balance: %s of %s is not a number at %g s", l.channels[i].Kind, l.channels[i].Block, s.T)
 			}
-		case circuit.Work:
-			work[2*l.axisOf[i]] += p
-			gap -= p
-		default:
-			gap -= p
 		}
 	}
-	fuel := net - mains
+	for _, i := range l.supplies {
+		net += s.Power[i]
+	}
+	fuel := 0.0
+	for _, i := range l.fuels {
+		fuel += s.Power[i]
+	}
+	mains = net - fuel
+	l.now[base+itemSeconds] = 1
 	l.now[base+itemSupplyIn], l.now[base+itemReturned], l.now[base+itemFuel] = math.Max(mains, 0)+fuel, math.Max(-mains, 0), fuel
+	work := l.now[base+itemWork:]
+	clear(work)
+	for k, i := range l.works {
+		work[2*l.axisOf[k]] += s.Power[i]
+	}
 	for a := range l.axes {
 		p := work[2*a]
 		work[2*a], work[2*a+1] = math.Max(p, 0), math.Min(p, 0)
 	}
 	return net, mains, math.Abs(gap), nil
+}
+
+// Part books the time steps after before, and the time from it to the first of them.
+func (l *Ledger) Part(from, to int, before *circuit.Sample) circuit.Receiver {
+	p := newLedger(l.channels, l.shafts)
+	p.course = make([]powerAt, 0, to-from+1)
+	if before != nil && p.Sample(before) == nil { // what is wrong with it the part before says
+		p.steps, p.course = 0, p.course[:0]
+		for _, sums := range p.sums {
+			clear(sums) // what it drew at once is of the part before
+		}
+	}
+	return p
+}
+
+// Join adds what a part has booked.
+func (l *Ledger) Join(part circuit.Receiver) error {
+	p := part.(*Ledger)
+	p.bookLast()
+	for k := range l.sums {
+		for i, j := range p.sums[k] {
+			l.sums[k][i] += j
+		}
+	}
+	for _, x := range p.course {
+		l.mean.take(x)
+	}
+	first := l.steps == 0
+	if first {
+		l.from = p.from
+	}
+	l.at, l.steps = p.at, l.steps+p.steps
+	l.drawn.meet(p.drawn.value, p.drawn.at, first)
+	l.gap.meet(p.gap.value, p.gap.at, first)
+	l.shaft.meet(p.shaft.value, p.shaft.at, first)
+	return nil
+}
+
+func situationOf(s *circuit.Sample) situation {
+	if s.Driving {
+		return situation(modeOf(s)) + whileDriven
+	}
+	return situation(modeOf(s))
 }
 
 func modeOf(s *circuit.Sample) mode {

@@ -85,21 +85,48 @@ func (o *operation) Sample(s *circuit.Sample) error {
 	return nil
 }
 
+// Part sums up the time steps after before, and the time from it to the first of them.
+func (o *operation) Part(_, _ int, before *circuit.Sample) circuit.Receiver {
+	p := &operation{}
+	for _, m := range o.machines {
+		m.states = map[[3]int]*Operating{}
+		p.machines = append(p.machines, m)
+	}
+	if before != nil {
+		_ = p.Sample(before) // never fails, and books nothing yet
+	}
+	return p
+}
+
+// Join adds the states of a part.
+func (o *operation) Join(part circuit.Receiver) error {
+	for i, m := range part.(*operation).machines {
+		for key, s := range m.states {
+			o.machines[i].add(key, *s)
+		}
+	}
+	return nil
+}
+
 // book adds to the states alike; their mean is weighted by energy.
 func (m *operated) book(x Operating, power, dt float64) {
 	key := [3]int{int(math.Round(x.W / alikeSpeed)), int(math.Round(x.E / alikeSetting)), int(math.Round(x.DP / alikePressure))}
+	x.Seconds, x.Energy = dt, power*dt
+	m.add(key, x)
+}
+
+func (m *operated) add(key [3]int, x Operating) {
 	at := m.states[key]
 	if at == nil {
 		at = &Operating{W: x.W, E: x.E, DP: x.DP}
 		m.states[key] = at
 	}
-	e := power * dt
-	if sum := at.Energy + e; sum > 0 {
-		k := e / sum
+	if sum := at.Energy + x.Energy; sum > 0 {
+		k := x.Energy / sum
 		at.W, at.E, at.DP = at.W+k*(x.W-at.W), at.E+k*(x.E-at.E), at.DP+k*(x.DP-at.DP)
 	}
-	at.Seconds += dt
-	at.Energy += e
+	at.Seconds += x.Seconds
+	at.Energy += x.Energy
 }
 
 // all lists the states by machine, those with most energy first.

@@ -26,17 +26,49 @@ func (p *progress) add(n int) {
 	p.tell(p.done, p.total)
 }
 
-// stepCounter is the circuit.Receiver that turns time steps into progress.
+// stepCounter is the circuit.Receiver that turns time steps into progress. Where nobody
+// knows how many there will be, it comes nearer to the whole and never there.
 type stepCounter struct {
 	progress         *progress
 	seen, of, passed int
+	next             int  // what seen must be for more progress to be told
+	open             bool // there may be many more steps than of
 }
 
 // Sample counts one time step.
 func (c *stepCounter) Sample(*circuit.Sample) error {
-	c.seen++
-	part := progressParts * c.seen / c.of
-	c.progress.add(part - c.passed)
-	c.passed = part
+	c.count(1)
 	return nil
 }
+
+// usualCycles is how many cycles pass by the middle of the progress of an open count.
+const usualCycles = 4
+
+func (c *stepCounter) count(n int) {
+	if c.seen += n; c.seen < c.next {
+		return
+	}
+	of := c.of
+	if c.open {
+		of = c.seen + usualCycles*c.of
+	}
+	part := min(progressParts, progressParts*c.seen/of)
+	c.progress.add(part - c.passed)
+	c.passed = part
+	c.next = c.seen + (c.of+progressParts-1)/progressParts
+}
+
+// Part counts nothing: a part is counted when it is joined.
+func (c *stepCounter) Part(from, to int, _ *circuit.Sample) circuit.Receiver {
+	return stepsOfPart(to - from)
+}
+
+// Join counts the steps of a part.
+func (c *stepCounter) Join(part circuit.Receiver) error {
+	c.count(int(part.(stepsOfPart)))
+	return nil
+}
+
+type stepsOfPart int
+
+func (stepsOfPart) Sample(*circuit.Sample) error { return nil }

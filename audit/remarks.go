@@ -52,6 +52,10 @@ func (c *CircuitRun) dutyRemarks(d *DutyRun) []circuit.Finding {
 		say(circuit.Note, "", 0, "at the end of the cycle %s more is stored than at its start, so the next cycle does not start as this one did; "+
 			"the year counts every cycle alike. Close the strokes of the duty", kilojoules(s))
 	}
+	if what := d.Certificate.Sequential; what != "" {
+		say(circuit.Note, "", 0, "its %d time steps were balanced one after another, on one processor: each starts from what %s is left with. "+
+			"Circuits that remember nothing are balanced in stretches at the same time", d.Certificate.Steps, what)
+	}
 	if d.Duty.Hours <= 0 {
 		say(circuit.Note, "", 0, "duty %s has no hours a year and is left out of the year; give its hours", d.Duty.Name)
 	}

@@ -122,7 +122,7 @@ func TestEveryLossOfARunBreaksClosure(t *testing.T) {
 		b := plain.Balance(true)
 		in := b.SupplyIn.Total() - b.WorkNegative().Total() + math.Abs(b.StoredEnergy().Total())
 		for i, ch := range c.Channels() {
-			share := plain.items[i].Total() / in
+			share := plain.item(i).Total() / in
 			if ch.Role != circuit.Loss || share < 100*ClosureLimit {
 				continue
 			}
@@ -286,7 +286,7 @@ func TestPlotIsThinnedWithoutLosingPeaks(t *testing.T) {
 				t.Fatal(err)
 			}
 		}
-		k := r.plot.Signals[0]
+		k := r.done().Signals[0]
 		if len(k.T) > PlotPoints || len(k.T) != len(k.V) {
 			t.Errorf("%d steps: %d points", n, len(k.T))
 		}

@@ -1,10 +1,6 @@
 package circuit
 
-import (
-	"math"
-
-	"barlitre/circuit/duty"
-)
+import "barlitre/circuit/duty"
 
 // safety gives the cautions that a drawing asks for.
 func (k *checker) safety() {
@@ -95,19 +91,9 @@ func (k *checker) suspended(b *Block) {
 
 // standsUnderLoad reports whether a duty has an axis stand under a load.
 func (k *checker) standsUnderLoad(d *duty.Duty, axis string) bool {
-	s := d.Series(k.axes, false)
-	for i, a := range k.axes {
-		if a.Name != axis || s.Axes[i].Load == nil {
-			continue
-		}
-		top := 0.0
-		for _, f := range s.Axes[i].Load {
-			top = math.Max(top, math.Abs(f))
-		}
-		for j, f := range s.Axes[i].Load { // what is left of a ramp at the threshold of standstill is no load
-			if s.Axes[i].Standing[j] && math.Abs(f) > 0.01*top {
-				return true
-			}
+	for _, a := range k.axes {
+		if a.Name == axis {
+			return d.StandsUnder(a, 0.01) // what is left of a ramp at the threshold of standstill is no load
 		}
 	}
 	return false

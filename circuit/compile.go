@@ -178,7 +178,11 @@ func (c *Compiled) Axes() []duty.Axis { return c.axes }
 // Circuit returns what was compiled.
 func (c *Compiled) Circuit() *Circuit { return c.circuit }
 
-// Series lays a duty out in the time steps that this circuit needs.
+// HasInertia reports whether a mass is moved, so that its acceleration counts.
+func (c *Compiled) HasInertia() bool { return c.inertia }
+
+// Series lays a duty out in the time steps that this circuit needs; circuits for the
+// same axes that agree in HasInertia need the same ones.
 func (c *Compiled) Series(d *duty.Duty) *duty.Series { return d.Series(c.axes, c.inertia) }
 
 // unknown adds an unknown and names its row.

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math"
+	"strings"
 	"testing"
 
 	"barlitre/circuit/duty"
@@ -56,8 +57,14 @@ func furthest(a, b [][]float64) float64 {
 	return most / top
 }
 
-// A long duty gives the same on any number of goroutines, and the same as in one go;
-// with a supply that leaves the axes behind their duty, chunks must be done again.
+// stroked gives the cylinder of C1 a stroke and a place to start.
+func stroked(stroke, start string) string {
+	return strings.Replace(c1, "axis: ram; ", "axis: ram; stroke: "+stroke+"; start: "+start+"; ", 1)
+}
+
+// A long duty gives the same on any number of goroutines, and the same as in one go.
+// Where the supply leaves the axes behind their duty, a chunk must be done again only if
+// an end of their stroke is near.
 func TestChunksOnManyGoroutines(t *testing.T) {
 	for _, c := range []struct {
 		name, text string
@@ -67,7 +74,9 @@ func TestChunksOnManyGoroutines(t *testing.T) {
 		behind     bool
 	}{
 		{"C1", c1, ramAxis, ramDuty, 0, false},
-		{"C1 stalls", c1, ramAxis, ramDuty, 60e5, true},
+		{"C1 falls behind", c1, ramAxis, ramDuty, 60e5, false},
+		{"C1 falls behind, ends far", stroked("30 m", "15 m"), ramAxis, ramDuty, 60e5, false},
+		{"C1 falls behind, to an end", stroked("900 mm", "300 mm"), ramAxis, ramDuty, 60e5, true},
 		{"C3", c3, trialAxes, bothDuty, 0, false},
 	} {
 		d := long(c.d, c.axes, 18)
@@ -85,7 +94,7 @@ func TestChunksOnManyGoroutines(t *testing.T) {
 		if err != nil || cert.Unbalanced > 0 {
 			t.Fatal(c.name, err, cert)
 		}
-		for _, workers := range []int{1, 3} {
+		for _, workers := range []int{1, 2, 3} {
 			var got all
 			par := newParallel(k, p, s, trialOil)
 			end, cut, err := par.all(context.Background(), workers, &got)

@@ -140,6 +140,12 @@ func (m *pistonModel) ends(s *step, a *axisStep) {
 	}
 }
 
+// reach gives the way to the ends; they steepen something only where a unit of scaled
+// speed brings the piston to one within a step, and few speeds are more than a unit.
+func (m *pistonModel) reach() (axis int, in, out, unit float64, has bool) {
+	return m.axis, -m.first, m.way - m.first, 1 / m.scale, m.stroke >= 0
+}
+
 func (m *pistonModel) begin(s *step) {
 	a := &s.axes[m.axis]
 	m.load = (a.load + m.m*a.accel) / m.force

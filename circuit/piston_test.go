@@ -332,7 +332,7 @@ func TestEndsOfPeriodicRuns(t *testing.T) {
 	}
 	s := k.Series(ramDuty)
 	w := k.NewWatch(k.Defaults(), s)
-	cycles, _, cert, err := RunPeriodic(context.Background(), k, k.Defaults(), s, trialOil, w)
+	cycles, _, cert, err := RunPeriodic(context.Background(), k, k.Defaults(), s, trialOil, Receivers{}, w)
 	if err != nil || cert.Unbalanced > 0 || cycles != 2 {
 		t.Fatalf("%d cycles, %v, %+v", cycles, err, cert)
 	}

@@ -34,16 +34,23 @@ var ErrParameters = errors.New("parameters do not fit the circuit")
 //
 // Run has no side effects; any number may run at once on one Compiled.
 func Run(ctx context.Context, c *Compiled, params []float64, s *duty.Series, cond Conditions, st State, to Receiver) (State, Certificate, error) {
+	if err := c.fits(params, s); err != nil {
+		return st, Certificate{}, err
+	}
+	return newRun(c, params, cond, s).all(ctx, st, 0, len(s.T), to)
+}
+
+// fits reports what parameters or a series lack to be those of the circuit.
+func (c *Compiled) fits(params []float64, s *duty.Series) error {
 	if len(params) != len(c.params) || len(s.Axes) != len(c.axes) {
-		return st, Certificate{}, fmt.Errorf("%w: %d numbers for %d, %d axes for %d", ErrParameters, len(params), len(c.params), len(s.Axes), len(c.axes))
+		return fmt.Errorf("%w: %d numbers for %d, %d axes for %d", ErrParameters, len(params), len(c.params), len(s.Axes), len(c.axes))
 	}
 	for i, v := range params {
 		if math.IsNaN(v) || math.IsInf(v, 0) {
-			return st, Certificate{}, fmt.Errorf("%w: %s.%s is not a number", ErrParameters, c.params[i].Block, c.params[i].Key)
+			return fmt.Errorf("%w: %s.%s is not a number", ErrParameters, c.params[i].Block, c.params[i].Key)
 		}
 	}
-	r := newRun(c, params, cond, s)
-	return r.all(ctx, st, to)
+	return nil
 }
 
 // run is the workspace of one call.
@@ -60,8 +67,8 @@ type run struct {
 	state    State
 	volumes  []float64
 	slip     []float64 // leakage of each actuator, m³/s per Pa
-	topLoad  []float64
 	params   []float64
+	strokes  []stroke
 	switches []switching
 	haste    float64 // by how much axes move faster than asked; see approach
 	scales
@@ -90,10 +97,14 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 		m = m.clone()
 		m.bind(b)
 		r.models = append(r.models, m)
+		if m, ok := m.(ended); ok {
+			if axis, lo, hi, unit, has := m.reach(); has {
+				r.strokes = append(r.strokes, stroke{axis: axis, lo: lo, hi: hi, unit: unit})
+			}
+		}
 	}
 	r.volumes = make([]float64, len(c.axes))
 	r.slip = make([]float64, len(c.axes))
-	r.topLoad = make([]float64, len(c.axes))
 	for i, m := range c.movers {
 		r.volumes[i] = 1
 		if m.volume != nil {
@@ -101,9 +112,6 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 		}
 		if m.slip != nil {
 			r.slip[i] = m.slip(params) / cond.Viscosity
-		}
-		for _, f := range s.Axes[i].Load {
-			r.topLoad[i] = math.Max(r.topLoad[i], math.Abs(f))
 		}
 	}
 	r.sort()
@@ -124,7 +132,8 @@ func (c *Compiled) flowScale(p []float64) float64 {
 	return q
 }
 
-func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificate, error) {
+// all balances the steps of the series from up to but not with end.
+func (r *run) all(ctx context.Context, st State, from, end int, to Receiver) (State, Certificate, error) {
 	x := r.step.x
 	warm := st.begun && len(st.x) == len(x)
 	if warm {
@@ -139,6 +148,9 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 	good := append([]float64(nil), x...)
 	lost := 0
 	r.beginSlow(st)
+	for i := range r.strokes {
+		r.strokes[i].from, r.strokes[i].to = math.Inf(1), math.Inf(-1)
+	}
 	// One solved, booked and handed over point in time, at a share of the way from the step before.
 	point := func(k int, share float64) error {
 		res := r.solve(k, share, x, good, warm)
@@ -156,7 +168,7 @@ func (r *run) all(ctx context.Context, st State, to Receiver) (State, Certificat
 		}
 		return to.Sample(&r.sample)
 	}
-	for k := range r.series.T {
+	for k := from; k < end; k++ {
 		if k&255 == 0 && ctx.Err() != nil {
 			return r.state, r.cert, ctx.Err()
 		}
@@ -202,15 +214,14 @@ func (r *run) approach(k int, share float64, x, good []float64) balance.Result {
 	return res
 }
 
-// between reads a column at a share of the way from the step before k to k.
-func between(v []float64, k int, share float64) float64 {
-	if v == nil {
-		return 0
-	}
+// between reads what at gives at a share of the way from the step before k to k.
+func between(at func(k int) float64, k int, share float64) float64 {
+	now := at(k)
 	if share >= 1 || k == 0 {
-		return v[k]
+		return now
 	}
-	return v[k-1] + share*(v[k]-v[k-1])
+	before := at(k - 1)
+	return before + share*(now-before)
 }
 
 // next is the time from a point to the one after it; what follows a series is taken
@@ -231,7 +242,7 @@ func (r *run) next(k int, share float64) float64 {
 func (r *run) begin(k int, share float64) {
 	s := &r.step
 	s.k, s.standing, s.stood = k, true, r.state.stood
-	s.t = between(r.series.T, k, share)
+	s.t = between(func(k int) float64 { return r.series.T[k] }, k, share)
 	s.dt = 0
 	if r.state.begun {
 		s.dt = math.Max(0, s.t-r.state.lastT)
@@ -240,7 +251,7 @@ func (r *run) begin(k int, share float64) {
 	for i := range s.axes {
 		a, d := &s.axes[i], &r.series.Axes[i]
 		*a = axisStep{given: d.Given, standing: d.Standing[k], travel: r.state.travel[i], before: r.state.speed[i]}
-		a.load, a.command, a.demand = between(d.Load, k, share), between(d.Command, k, share), between(d.Speed, k, share)
+		a.load, a.command, a.demand = between(d.LoadAt, k, share), between(d.CommandAt, k, share), between(d.SpeedAt, k, share)
 		if d.Accel != nil {
 			a.accel = d.Accel[k]
 		}
@@ -419,9 +430,14 @@ func (r *run) axesNow(k int, unbalanced bool) {
 		}
 		s.Axes[i] = now
 		s.Driving = s.Driving || (now.Load*now.Speed < 0 && math.Abs(now.Speed) > stillSpeed)
-		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > HoldShare*r.topLoad[i])
+		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > HoldShare*r.series.Axes[i].TopLoad)
 		r.state.travel[i] += dt * (r.state.speed[i] + now.Speed) / 2
 		r.state.speed[i] = now.Speed
+	}
+	for i := range r.strokes {
+		k := &r.strokes[i]
+		a := &r.step.axes[k.axis]
+		k.meet(r.state.travel[k.axis], a.travel+a.before*dt/2, 10*k.unit*(dt+r.step.next)/2)
 	}
 	r.state.lastT, r.state.stood = s.T, r.step.standing
 	copy(r.state.slow, r.book.next)

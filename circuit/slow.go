@@ -141,16 +141,17 @@ func (c *Compiled) HasSlowStates() bool { return len(c.slow) > 0 }
 // true period to the receiver: one cycle, or as many as it takes until the states
 // are what they were (a charging valve may switch only every other cycle). Times run on
 // from cycle to cycle. It returns how many cycles the period has. Circuits without
-// slow states are run once.
-func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Series, cond Conditions, to Receiver) (cycles int, st State, cert Certificate, err error) {
+// slow states are run once, as by RunParallel. settle receives the cycles that pass
+// until then.
+func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Series, cond Conditions, settle, to Receiver) (cycles int, st State, cert Certificate, err error) {
 	if !c.HasSlowStates() {
-		st, cert, err = Run(ctx, c, params, s, cond, State{}, to)
+		st, cert, err = RunParallel(ctx, c, params, s, cond, 0, to)
 		return 1, st, cert, err
 	}
 	var past [][]float64
 	for n := 0; n < maxCycles; n++ {
 		st.travel = nil // every cycle begins where its axes stand at the start
-		if st, cert, err = Run(ctx, c, params, s, cond, st, Receivers{}); err != nil {
+		if st, cert, err = Run(ctx, c, params, s, cond, st, settle); err != nil {
 			return 0, st, cert, err
 		}
 		now := append([]float64(nil), st.slow...)
@@ -173,11 +174,11 @@ func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Ser
 	length := s.T[len(s.T)-1] - s.T[0]
 	for n := 0; n < cycles; n++ {
 		later := *s
-		later.T = make([]float64, len(s.T))
-		for i, t := range s.T {
-			later.T[i] = t + float64(n)*length
-		}
 		if n > 0 {
+			later.T = make([]float64, len(s.T))
+			for i, t := range s.T {
+				later.T[i] = t + float64(n)*length
+			}
 			st.lastT = later.T[0]
 		} else {
 			st.begun = false // the first point of the period has no time before it
@@ -190,6 +191,7 @@ func RunPeriodic(ctx context.Context, c *Compiled, params []float64, s *duty.Ser
 		}
 		total = total.plus(one)
 	}
+	total.Sequential = c.sequential(s)
 	return cycles, st, total, err
 }
 

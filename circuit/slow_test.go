@@ -41,7 +41,7 @@ func TestAccumulatorCircuitFindsItsPeriod(t *testing.T) {
 	l := &ledger{c: k, pow: make([]float64, len(k.channels)), E: make([]float64, len(k.channels)), at: map[string][]float64{}}
 	s := k.Series(ramDuty)
 	w := k.NewWatch(k.Defaults(), s)
-	n, _, cert, err := RunPeriodic(context.Background(), k, k.Defaults(), s, trialOil, Receivers{l, w})
+	n, _, cert, err := RunPeriodic(context.Background(), k, k.Defaults(), s, trialOil, Receivers{}, Receivers{l, w})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -132,6 +132,9 @@ type Certificate struct {
 	// Unsolved lists the first few steps that stayed unbalanced; Unbalanced counts them all.
 	Unbalanced int
 	Unsolved   []Unsolved
+	// Sequential names what made a long duty be balanced in one go on one processor: what
+	// the circuit remembers from step to step. "" for others and for short duties.
+	Sequential string
 }
 
 // Unsolved names a time step that could not be balanced.

@@ -2,6 +2,8 @@ package circuit
 
 import (
 	"math"
+	"slices"
+	"sort"
 
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
@@ -16,7 +18,6 @@ type Watch struct {
 	steps  int
 	cycles int // that are over
 	lastT  float64
-	weight float64 // half the time since the step before
 	ext    []extreme
 	axes   []axisWatch
 	motors []motorWatch
@@ -105,7 +106,7 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 		case kindRelief:
 			w.reds = append(w.reds, reliefWatch{b: b, flow: get(b.ID + ".P.q"), p: get(b.ID + ".P.p")})
 		case kindPump, kindChargePump, kindHydraulicMotor, kindFlowDivider:
-			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1)}
+			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1), slow: math.Inf(1)}
 			if b.Kind == kindHydraulicMotor {
 				m.pP, m.pS = get(b.ID+".A.p"), get(b.ID+".B.p")
 			}
@@ -151,6 +152,11 @@ func (w *Watch) value(b *Block, key string) float64 {
 
 // Sample takes one time step.
 func (w *Watch) Sample(s *Sample) error {
+	w.take(s)
+	return nil
+}
+
+func (w *Watch) take(s *Sample) {
 	dt := 0.0
 	if w.steps > 0 {
 		dt = s.T - w.lastT
@@ -159,7 +165,7 @@ func (w *Watch) Sample(s *Sample) error {
 	w.steps++
 	w.span += dt
 	if s.Unbalanced {
-		return nil // its numbers mean nothing
+		return // its numbers mean nothing
 	}
 	for i, v := range s.Signals {
 		e := &w.ext[i]
@@ -213,7 +219,6 @@ func (w *Watch) Sample(s *Sample) error {
 		w.starts++
 	}
 	w.stop = s.Stopped
-	return nil
 }
 
 // A demand counts as met when the speed is within a thousandth of it.
@@ -284,7 +289,7 @@ func (m *machineWatch) take(s *Sample, dt float64) {
 		dp -= s.Signals[m.pS]
 	}
 	slow := m.min > 0 && v < m.min && math.Abs(dp) > 5*units.Bar
-	if slow && (m.slowTime == 0 || v < m.slow) {
+	if slow && v < m.slow {
 		m.slow, m.tSlow = v, s.T
 	}
 	if slow && m.lastSlow {
@@ -342,18 +347,14 @@ func (w *Watch) PeakPressure() Peak {
 // pressure found without its compression is too high.
 func (w *Watch) fastRamp(t float64) bool {
 	const window = 0.1
+	T := w.series.T
+	from := sort.SearchFloat64s(T, t-window)
+	to := from + sort.Search(len(T)-from, func(i int) bool { return T[from+i] > t+window })
 	for _, a := range w.series.Axes {
-		if a.Load == nil {
+		if a.Load == nil || from == to {
 			continue
 		}
-		lo, hi, top := math.Inf(1), math.Inf(-1), 0.0
-		for k, f := range a.Load {
-			top = math.Max(top, math.Abs(f))
-			if math.Abs(w.series.T[k]-t) <= window {
-				lo, hi = math.Min(lo, f), math.Max(hi, f)
-			}
-		}
-		if hi-lo > 0.2*top {
+		if near := a.Load[from:to]; slices.Max(near)-slices.Min(near) > 0.2*a.TopLoad {
 			return true
 		}
 	}

@@ -50,9 +50,14 @@ func (s *startWatch) take(now *Sample) {
 	if a.Demand < 0 {
 		avail = s.way[1]
 	}
-	if s.need == 0 || need-avail > s.need-s.avail || (math.IsInf(avail, 1) && need > s.need) {
+	if s.worse(need, avail) {
 		s.need, s.avail, s.load, s.t, s.forwards = need, avail, math.Abs(a.Load), now.T, a.Demand > 0
 	}
+}
+
+// worse reports whether a start asks for more, against what there is, than the worst so far.
+func (s *startWatch) worse(need, avail float64) bool {
+	return s.need == 0 || need-avail > s.need-s.avail || (math.IsInf(avail, 1) && need > s.need)
 }
 
 func (s *startWatch) gates() []Gate {

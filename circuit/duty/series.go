@@ -2,7 +2,7 @@ package duty
 
 import (
 	"math"
-	"sort"
+	"slices"
 )
 
 // StandstillShare is the share of an axis' largest speed (or command) below
@@ -11,16 +11,43 @@ import (
 // in the report).
 const StandstillShare = 1e-3
 
-// AxisSeries is what one axis must do at each time step of a Series.
+// AxisSeries is what one axis must do at each time step of a Series. What decides
+// its standstill, the speed or without one the command, counts as 0 while it stands.
 type AxisSeries struct {
 	Axis     Axis
 	Given    Given
-	Speed    []float64 // 0 while standing; nil when motion is not given
-	Accel    []float64 // of the segment that the time step belongs to
+	Speed    []float64 // nil when motion is not given; see SpeedAt
+	Accel    []float64 // of the segment that the time step belongs to; nil unless asked for
 	Load     []float64 // nil when the load is not given
-	Command  []float64 // nil when not given
+	Command  []float64 // nil when not given; see CommandAt
 	Standing []bool
 	Top      float64 // largest |speed| of the duty, 0 when motion is not given
+	TopLoad  float64 // largest |load| of the duty, 0 when the load is not given
+}
+
+// SpeedAt returns the speed at time step k, 0 while the axis stands or its motion is not given.
+func (a *AxisSeries) SpeedAt(k int) float64 {
+	if a.Speed == nil || a.Standing[k] {
+		return 0
+	}
+	return a.Speed[k]
+}
+
+// LoadAt returns the load at time step k, 0 where none is given.
+func (a *AxisSeries) LoadAt(k int) float64 {
+	if a.Load == nil {
+		return 0
+	}
+	return a.Load[k]
+}
+
+// CommandAt returns the command at time step k, 0 where none is given or the axis
+// stands because of it.
+func (a *AxisSeries) CommandAt(k int) float64 {
+	if a.Command == nil || a.Speed == nil && a.Standing[k] {
+		return 0
+	}
+	return a.Command[k]
 }
 
 // Control names a track that a duty gives for a block.
@@ -31,7 +58,8 @@ type Control struct {
 
 // Series is a duty laid out in time steps: the rows of the duty, the steps
 // between them, and the instants at which an axis comes to rest or sets off,
-// each as two time steps at one time (before, after).
+// each as two time steps at one time (before, after). Its columns are not to be
+// changed: where nothing stands between the rows they are those of the duty.
 type Series struct {
 	T        []float64
 	Axes     []AxisSeries
@@ -44,62 +72,67 @@ type Series struct {
 // nothing in. With inertia set, rows at which an acceleration jumps become two
 // time steps, so that the force of a moved mass is right on both sides.
 func (d *Duty) Series(axes []Axis, inertia bool) *Series {
-	speeds := make([]*column, len(axes))
-	cmds := make([]*column, len(axes))
-	loads := make([]*column, len(axes))
-	top := make([]float64, len(axes))
-	rest := make([]*column, len(axes)) // the column that decides standstill
-	limit := make([]float64, len(axes))
-	for i, a := range axes {
-		speeds[i] = d.speedColumn(a.Name)
-		loads[i] = d.column(a.Name, Load)
-		cmds[i] = d.column(a.Name, Command)
-		top[i] = speeds[i].top()
-		rest[i] = speeds[i]
-		if rest[i] == nil {
-			rest[i] = cmds[i]
-		}
-		limit[i] = StandstillShare * rest[i].top()
-	}
-	grid := d.grid(rest, limit, inertia)
 	s := &Series{Repeats: d.Repeats, Duty: d, Commands: map[Control][]float64{}}
-	for _, g := range grid {
-		s.T = append(s.T, g.t)
-	}
+	l := newLayout(d, axes, inertia)
+	columns := []*column{{d.Time, d.Time}}
+	var loads []*column
 	for i, a := range axes {
-		as := AxisSeries{Axis: a, Given: d.Given(a.Name), Top: top[i], Standing: make([]bool, len(grid))}
-		as.Load = sampled(loads[i], grid)
-		as.Command = sampled(cmds[i], grid)
-		as.Speed = sampled(speeds[i], grid)
-		if speeds[i] != nil {
-			as.Accel = make([]float64, len(grid))
-		}
-		for k, g := range grid {
-			if d.Sampled {
-				g.mid = g.t
-			}
-			as.Standing[k] = standing(rest[i], limit[i], g)
-			if as.Speed != nil {
-				as.Accel[k] = speeds[i].slope(g.seg)
-				if as.Standing[k] {
-					as.Speed[k], as.Accel[k] = 0, 0
-				}
-			} else if as.Command != nil && as.Standing[k] {
-				as.Command[k] = 0
-			}
-		}
-		s.Axes = append(s.Axes, as)
+		loads = append(loads, d.column(a.Name, Load))
+		columns = append(columns, l.speeds[i], loads[i], d.column(a.Name, Command))
 	}
-	isAxis := map[string]bool{}
-	for _, a := range axes {
-		isAxis[a.Name] = true
-	}
+	var controls []Control
 	for _, tr := range d.Tracks {
-		if !isAxis[tr.Of] {
-			s.Commands[Control{tr.Of, tr.What}] = sampled(&column{d.Time, tr.Values}, grid)
+		if !slices.ContainsFunc(axes, func(a Axis) bool { return a.Name == tr.Of }) {
+			controls = append(controls, Control{tr.Of, tr.What})
+			columns = append(columns, &column{d.Time, tr.Values})
 		}
 	}
+	laid := l.laid(columns)
+	s.T = laid[0]
+	for i, a := range axes {
+		c := laid[1+3*i:]
+		s.Axes = append(s.Axes, AxisSeries{Axis: a, Given: d.Given(a.Name), Top: l.speeds[i].top(), TopLoad: loads[i].top(),
+			Speed: c[0], Load: c[1], Command: c[2]})
+	}
+	for i, c := range controls {
+		s.Commands[c] = laid[1+3*len(axes)+i]
+	}
+	s.rest(l)
 	return s
+}
+
+// rest finds where axes stand and, with inertia, how fast they gain speed where they do not.
+func (s *Series) rest(l *layout) {
+	for i := range s.Axes {
+		s.Axes[i].Standing = make([]bool, len(s.T))
+		if l.inertia && l.speeds[i] != nil {
+			s.Axes[i].Accel = make([]float64, len(s.T))
+		}
+	}
+	k := 0
+	l.walk(func(g instant) {
+		for i := range s.Axes {
+			a := &s.Axes[i]
+			a.Standing[k] = l.stands(i, g)
+			if a.Accel != nil && !a.Standing[k] {
+				a.Accel[k] = l.speeds[i].slope(g.seg)
+			}
+		}
+		k++
+	})
+}
+
+// StandsUnder reports whether an axis ever stands under more than a share of its largest load.
+func (d *Duty) StandsUnder(axis Axis, share float64) bool {
+	load := d.column(axis.Name, Load)
+	if load == nil {
+		return false
+	}
+	l, top, found := newLayout(d, []Axis{axis}, false), load.top(), false
+	l.walk(func(g instant) {
+		found = found || l.stands(0, g) && math.Abs(load.at(g.seg, g.t)) > share*top
+	})
+	return found
 }
 
 // Part returns time steps from up to but not with to; it shares the columns of s.
@@ -117,193 +150,7 @@ func (s *Series) Part(from, to int) *Series {
 		p.Axes = append(p.Axes, a)
 	}
 	for c, v := range s.Commands {
-		p.Commands[c] = v[from:to]
+		p.Commands[c] = cut(v)
 	}
 	return p
-}
-
-// column is one track over the rows.
-type column struct{ t, v []float64 }
-
-func (d *Duty) column(of string, w What) *column {
-	if tr := d.Track(of, w); tr != nil {
-		return &column{d.Time, tr.Values}
-	}
-	return nil
-}
-
-// speedColumn gives the speed track, or the speed taken from a position track:
-// at each row the central difference over its neighbours (one-sided at the ends
-// and at steps), linear between rows.
-func (d *Duty) speedColumn(of string) *column {
-	if c := d.column(of, Speed); c != nil {
-		return c
-	}
-	p := d.column(of, Position)
-	if p == nil {
-		return nil
-	}
-	v := make([]float64, len(p.t))
-	for i := range v {
-		a, b := max(i-1, 0), min(i+1, len(v)-1)
-		if p.t[a] == p.t[i] && i > 0 {
-			a = i
-		}
-		if p.t[b] == p.t[i] {
-			b = i
-		}
-		if p.t[b] > p.t[a] {
-			v[i] = (p.v[b] - p.v[a]) / (p.t[b] - p.t[a])
-		}
-	}
-	return &column{p.t, v}
-}
-
-func (c *column) top() float64 {
-	m := 0.0
-	if c != nil {
-		for _, v := range c.v {
-			m = math.Max(m, math.Abs(v))
-		}
-	}
-	return m
-}
-
-// at interpolates inside segment seg (rows seg, seg+1).
-func (c *column) at(seg int, t float64) float64 {
-	t0, t1 := c.t[seg], c.t[seg+1]
-	if t1 <= t0 || t <= t0 {
-		return c.v[seg]
-	}
-	if t >= t1 {
-		return c.v[seg+1]
-	}
-	return c.v[seg] + (c.v[seg+1]-c.v[seg])*(t-t0)/(t1-t0)
-}
-
-func (c *column) slope(seg int) float64 {
-	if h := c.t[seg+1] - c.t[seg]; h > 0 {
-		return (c.v[seg+1] - c.v[seg]) / h
-	}
-	return 0
-}
-
-// instant is a time step, the segment of rows it is read from, and the middle of
-// the stretch it belongs to: between two events a quantity is linear and an axis
-// either stands or moves, so a stretch is judged by its middle.
-type instant struct {
-	t   float64
-	seg int
-	mid float64
-}
-
-// standing reports whether an axis stands during the stretch of g.
-func standing(rest *column, limit float64, g instant) bool {
-	return rest == nil || math.Abs(rest.at(g.seg, g.mid)) <= limit
-}
-
-func sampled(c *column, grid []instant) []float64 {
-	if c == nil {
-		return nil
-	}
-	out := make([]float64, len(grid))
-	for k, g := range grid {
-		out[k] = c.at(g.seg, g.t)
-	}
-	return out
-}
-
-// grid lays out the time steps: rows, multiples of Step, and the instants at
-// which |rest| crosses its limit. Two stretches keep their common instant each,
-// as two time steps, where something jumps there; elsewhere they share one.
-func (d *Duty) grid(rest []*column, limit []float64, inertia bool) []instant {
-	var out []instant
-	for seg := 0; seg+1 < len(d.Time); seg++ {
-		t0, t1 := d.Time[seg], d.Time[seg+1]
-		if t1 == t0 {
-			continue // a step: the segments at both sides bring their own ends
-		}
-		start := t0
-		for _, end := range append(d.events(seg, rest, limit), t1) {
-			mid := (start + end) / 2
-			first := instant{start, seg, mid}
-			if n := len(out); n == 0 || d.jumps(out[n-1], first, rest, limit, inertia) {
-				out = append(out, first)
-			}
-			out = d.fill(out, start, end, seg, mid)
-			out = append(out, instant{end, seg, mid})
-			start = end
-		}
-	}
-	return out
-}
-
-// fill adds the multiples of Step, counted from the first row, strictly inside (a, b).
-func (d *Duty) fill(out []instant, a, b float64, seg int, mid float64) []instant {
-	if d.Step <= 0 {
-		return out
-	}
-	base, tiny := d.Time[0], 1e-6*d.Step
-	for i := math.Floor((a-base)/d.Step) + 1; ; i++ {
-		t := base + i*d.Step
-		if t >= b-tiny {
-			return out
-		}
-		if t > a+tiny {
-			out = append(out, instant{t, seg, mid})
-		}
-	}
-}
-
-// jumps reports whether anything changes at once between the end of one stretch
-// and the start of the next: a step of any track, rest or motion of an axis, and
-// with inertia the acceleration.
-func (d *Duty) jumps(end, start instant, rest []*column, limit []float64, inertia bool) bool {
-	if start.seg > end.seg+1 {
-		return true // rows with one time stamp lie between
-	}
-	if d.Sampled {
-		return false
-	}
-	for i, c := range rest {
-		if standing(c, limit[i], end) != standing(c, limit[i], start) {
-			return true
-		}
-		if inertia && c != nil && end.seg != start.seg {
-			a, b := c.slope(end.seg), c.slope(start.seg)
-			if math.Abs(a-b) > 1e-9*(math.Abs(a)+math.Abs(b)) {
-				return true
-			}
-		}
-	}
-	return false
-}
-
-// events returns the times inside a segment at which an axis comes to rest or sets off.
-func (d *Duty) events(seg int, rest []*column, limit []float64) []float64 {
-	var ev []float64
-	t0, t1 := d.Time[seg], d.Time[seg+1]
-	tiny := 1e-9 * (t1 - t0)
-	for i, c := range rest {
-		if c == nil || limit[i] == 0 || d.Sampled {
-			continue
-		}
-		v0, v1 := c.v[seg], c.v[seg+1]
-		for _, lim := range [2]float64{limit[i], -limit[i]} {
-			if (v0-lim)*(v1-lim) < 0 {
-				t := t0 + (t1-t0)*(lim-v0)/(v1-v0)
-				if t > t0+tiny && t < t1-tiny {
-					ev = append(ev, t)
-				}
-			}
-		}
-	}
-	sort.Float64s(ev)
-	out := ev[:0]
-	for _, t := range ev {
-		if len(out) == 0 || t > out[len(out)-1]+tiny {
-			out = append(out, t)
-		}
-	}
-	return out
 }
