@@ -89,6 +89,9 @@ type Duty struct {
 	Hours   float64 // s a year in which the duty runs
 	Repeats bool    // the cycle repeats without pause while it runs
 	Step    float64 // s, spacing of time steps between the rows; 0 = rows only
+	// Standstill gives the speed [m/s or rad/s] up to which an axis counts as
+	// standing, by axis; StandstillShare of its largest speed where it gives none.
+	Standstill map[string]float64
 	// Sampled leaves out the instants at which an axis comes to rest or sets off:
 	// the energies are then those of a plain sum over samples, as calculations on
 	// recorded samples give them. Only meant for comparing with such calculations.

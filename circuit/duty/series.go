@@ -5,7 +5,7 @@ import (
 	"sort"
 )
 
-// StandstillShare is the share of an axis' largest speed (or command) below
+// StandstillShare is, unless a duty says otherwise, the share of an axis' largest speed (or command) below
 // which it counts as standing. Recordings never read exactly zero; 0.1 % of the
 // top speed is below what any axis is driven at on purpose (our choice, stated
 // in the report).
@@ -60,6 +60,9 @@ func (d *Duty) Series(axes []Axis, inertia bool) *Series {
 			rest[i] = cmds[i]
 		}
 		limit[i] = StandstillShare * rest[i].top()
+		if speeds[i] != nil {
+			limit[i] = d.StandsBelow(a.Name, top[i])
+		}
 	}
 	grid := d.grid(rest, limit, inertia)
 	s := &Series{Repeats: d.Repeats, Duty: d, Commands: map[Control][]float64{}}
@@ -120,6 +123,15 @@ func (s *Series) Part(from, to int) *Series {
 		p.Commands[c] = v[from:to]
 	}
 	return p
+}
+
+// StandsBelow returns the speed up to which an axis counts as standing, for the largest
+// speed top of the duty.
+func (d *Duty) StandsBelow(axis string, top float64) float64 {
+	if v, ok := d.Standstill[axis]; ok {
+		return v
+	}
+	return StandstillShare * top
 }
 
 // column is one track over the rows.
