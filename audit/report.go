@@ -70,6 +70,7 @@ type DutyPage struct {
 	Name    string
 	Figures []Figure
 	Losses  Table
+	Work    Table // by axis; no rows for a single one
 }
 
 // Table is a table of printed cells. The first column is text, the others are numbers.

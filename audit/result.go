@@ -75,9 +75,17 @@ type EnergyResult struct {
 	Returned     float64      `json:"returned"`
 	WorkPositive float64      `json:"work_positive"`
 	WorkNegative float64      `json:"work_negative"`
+	Work         []WorkResult `json:"work"`   // by axis, adds up to the two above
 	Stored       float64      `json:"stored"` // end minus start
 	HeatToOil    float64      `json:"heat_to_oil"`
 	Losses       []LossResult `json:"losses"`
+}
+
+// WorkResult is the work of one axis over a cycle.
+type WorkResult struct {
+	Axis     string  `json:"axis"`
+	Positive float64 `json:"J_positive"`
+	Negative float64 `json:"J_negative"`
 }
 
 // LossResult is one loss of a cycle.
@@ -152,12 +160,15 @@ func dutyResult(d *DutyRun) DutyResult {
 		Name: d.Duty.Name, HoursPerYear: d.Duty.Hours / units.Hour, CyclesAveraged: max(d.Cycles, 1), CycleS: b.Cycle, TimeSteps: b.Steps,
 		Energy: EnergyResult{SupplyIn: b.SupplyIn.Total(), Returned: b.Returned.Total(),
 			WorkPositive: b.WorkPositive().Total(), WorkNegative: b.WorkNegative().Total(),
-			Stored: b.StoredEnergy().Total(), HeatToOil: b.HeatToOil().Total(), Losses: []LossResult{}},
+			Stored: b.StoredEnergy().Total(), HeatToOil: b.HeatToOil().Total(), Work: []WorkResult{}, Losses: []LossResult{}},
 		Closure: b.Closure(),
 		Peak: PeakResult{Pressure: Number(d.Peak.Value), At: d.Peak.At, T: Number(d.Peak.T), UpperEstimate: d.Peak.UpperEstimate,
 			Shaft: Number(b.PeakShaft), Supply: Number(b.PeakSupply)},
 		Shortfall:   []ShortfallResult{},
 		Certificate: CertificateResult{c.Unbalanced, Number(c.Worst), Number(c.Force), c.Fallbacks},
+	}
+	for _, w := range b.Work {
+		out.Energy.Work = append(out.Energy.Work, WorkResult{w.Axis, w.Positive.Total(), w.Negative.Total()})
 	}
 	for _, l := range b.Losses {
 		out.Energy.Losses = append(out.Energy.Losses, LossResult{l.Block, l.Kind, l.Sink, l.Energy.Total()})

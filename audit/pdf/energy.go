@@ -39,9 +39,12 @@ func (l *layout) energy() {
 			l.table(fromReport(c.States))
 		}
 		for _, d := range c.Duties {
-			t := fromReport(d.Losses)
-			t.title += ": " + d.Name
-			l.table(t)
+			for _, of := range []audit.Table{d.Losses, d.Work} {
+				if t := fromReport(of); len(t.rows) > 0 {
+					t.title += ": " + d.Name
+					l.table(t)
+				}
+			}
 		}
 	}
 	for _, d := range l.s.File.Duties {
