@@ -51,6 +51,7 @@ type DutyRun struct {
 	Certificate circuit.Certificate
 	Peak        circuit.Peak
 	Shortfalls  []circuit.Shortfall
+	Measured    []Measurement
 	Plot        *Plot
 }
 
@@ -202,6 +203,10 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 		plot.plot.Thinned = false
 		receivers = circuit.Receivers{ledger, watch, &until{plot, series.T[steps-1]}}
 	}
+	compared := newMeters(c, series)
+	if compared != nil {
+		receivers = append(receivers, compared)
+	}
 	table, err := j.openTable(c, r, number)
 	if err != nil {
 		return err
@@ -234,6 +239,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	}
 	r.Certificate, r.Plot = cert, plot.plot
 	r.Cycles = cycles
+	r.Measured, r.Plot.Measured = compared.results(), measuredTracks(r.Duty, compared)
 	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls(cycles)
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())

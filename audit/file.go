@@ -92,7 +92,9 @@ const Format = "barlitre/1"
 //	columns: {t: "time [s]", ram.speed: "v1 [mm/s]", ram.load: "F1 [kN]"}
 //
 // A track is axis.speed, axis.position, axis.load,
-// axis.command, or block.command for a block that is commanded by itself.
+// axis.command, or block.command for a block that is commanded by itself. A track of a
+// measuring point, X1.pressure or Q1.flow, is what was measured there: it changes nothing
+// and is compared with what is computed (see Measurement).
 //
 // A block is its kind, the parameters of that kind (see circuit.Catalog), and its
 // place on the sheet: at in modules, quarter turns, mirrored or not. Its id is

@@ -117,7 +117,7 @@ func (r *reader) standstill(s scope, n *yaml.Node) map[string]float64 {
 			}
 			continue
 		}
-		v, ok := r.quantity(in, e.value, e.key, trackDim(k, duty.Speed))
+		v, ok := r.quantity(in, e.value, e.key, duty.Speed.Dim(k))
 		if ok && v.SI < 0 {
 			r.bad(in, e.value, e.key, "is %s, must not be below 0", v.Text)
 		}
@@ -239,8 +239,6 @@ func (r *reader) keep(d *duty.Duty, name string, values []float64) {
 
 var trackWords = []string{duty.Speed.String(), duty.Position.String(), duty.Load.String(), duty.Command.String()}
 
-var blockDims = map[duty.What]units.Dim{duty.Command: units.Ratio, duty.SetPressure: units.Pressure, duty.SetFlow: units.Flow}
-
 // column finds the quantity that a column of a duty holds.
 func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units.Dim, bool) {
 	if name == "t" {
@@ -254,40 +252,25 @@ func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units
 	}
 	if k, ok := r.axisKind(of); ok {
 		if !w.OfAxis() {
-			r.bad(s, n, name, "%s is an axis; %s is for a pump with control: pq", of, what)
+			use := "a pump with control: pq"
+			if w.Measured() {
+				use = "a measuring point"
+			}
+			r.bad(s, n, name, "%s is an axis; %s is for %s", of, what, use)
 			return 0, false
 		}
-		return trackDim(k, w), true
+		return w.Dim(k), true
 	}
 	switch {
 	case r.axes[of]: // its kind was faulty, said already
 	case r.blocks[of] && w.OfBlock():
-		return blockDims[w], true
+		return w.Dim(duty.Linear), true
 	case r.blocks[of]:
-		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, %s is for an axis", of, what)
+		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, a measuring point a pressure or a flow; %s is for an axis", of, what)
 	default:
 		r.bad(s, n, name, "there is no axis or block %q%s", of, guess(of, r.axisNamesKnown()))
 	}
 	return 0, false
-}
-
-func trackDim(k duty.AxisKind, w duty.What) units.Dim {
-	rotary := k == duty.Rotary
-	switch {
-	case w == duty.Command:
-		return units.Ratio
-	case w == duty.Speed && rotary:
-		return units.AngularSpeed
-	case w == duty.Speed:
-		return units.Velocity
-	case w == duty.Position && rotary:
-		return units.Angle
-	case w == duty.Position:
-		return units.Length
-	case rotary:
-		return units.Torque
-	}
-	return units.Force
 }
 
 func (r *reader) axisNamesKnown() []string {

@@ -71,6 +71,8 @@ type DutyPage struct {
 	Figures []Figure
 	Losses  Table
 	Work    Table // by axis; no rows for a single one
+	// Measured channels against computed ones; no rows without measuring.
+	Measured Table
 }
 
 // Table is a table of printed cells. The first column is text, the others are numbers.

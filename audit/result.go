@@ -66,6 +66,7 @@ type DutyResult struct {
 	Closure        float64           `json:"closure_relative"`
 	Peak           PeakResult        `json:"peak"`
 	Shortfall      []ShortfallResult `json:"shortfall"`
+	Measured       []MeasuredResult  `json:"measured"`
 	Certificate    CertificateResult `json:"certificate"`
 }
 
@@ -111,6 +112,20 @@ type ShortfallResult struct {
 	Axis       string `json:"axis"`
 	Seconds    Number `json:"seconds"`
 	LostStroke Number `json:"lost_stroke_m"`
+}
+
+// MeasuredResult compares a measured channel with what is computed, at the rows of the
+// duty; see Measurement. Differences are measured less computed. Pa or m³/s by the point.
+type MeasuredResult struct {
+	Point      string `json:"point"`
+	Rows       int    `json:"rows"`
+	Measured   Number `json:"measured_mean"`
+	Computed   Number `json:"computed_mean"`
+	Difference Number `json:"difference_mean"`
+	NMBE       Number `json:"nmbe"`
+	CVRMSE     Number `json:"cv_rmse"`
+	Largest    Number `json:"largest_difference"`
+	At         Number `json:"largest_difference_at_s"`
 }
 
 // CertificateResult says how well the time steps are balanced.
@@ -165,6 +180,7 @@ func dutyResult(d *DutyRun) DutyResult {
 		Peak: PeakResult{Pressure: Number(d.Peak.Value), At: d.Peak.At, T: Number(d.Peak.T), UpperEstimate: d.Peak.UpperEstimate,
 			Shaft: Number(b.PeakShaft), Supply: Number(b.PeakSupply)},
 		Shortfall:   []ShortfallResult{},
+		Measured:    []MeasuredResult{},
 		Certificate: CertificateResult{c.Unbalanced, Number(c.Worst), Number(c.Force), c.Fallbacks},
 	}
 	for _, w := range b.Work {
@@ -172,6 +188,10 @@ func dutyResult(d *DutyRun) DutyResult {
 	}
 	for _, l := range b.Losses {
 		out.Energy.Losses = append(out.Energy.Losses, LossResult{l.Block, l.Kind, l.Sink, l.Energy.Total()})
+	}
+	for _, m := range d.Measured {
+		out.Measured = append(out.Measured, MeasuredResult{m.Point, m.Rows, Number(m.Measured), Number(m.Computed), Number(m.Difference),
+			Number(m.NMBE), Number(m.CVRMSE), Number(m.Largest), Number(m.At)})
 	}
 	for _, s := range d.Shortfalls {
 		out.Shortfall = append(out.Shortfall, shortfallResult(s))

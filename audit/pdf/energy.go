@@ -39,7 +39,7 @@ func (l *layout) energy() {
 			l.table(fromReport(c.States))
 		}
 		for _, d := range c.Duties {
-			for _, of := range []audit.Table{d.Losses, d.Work} {
+			for _, of := range []audit.Table{d.Losses, d.Work, d.Measured} {
 				if t := fromReport(of); len(t.rows) > 0 {
 					t.title += ": " + d.Name
 					l.table(t)

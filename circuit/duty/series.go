@@ -26,7 +26,7 @@ type AxisSeries struct {
 // Control names a track that a duty gives for a block.
 type Control struct {
 	Block string
-	What  What // Command, SetPressure or SetFlow
+	What  What // of a block, see What.OfBlock
 }
 
 // Series is a duty laid out in time steps: the rows of the duty, the steps
