@@ -64,9 +64,11 @@ func restAssumption(c *circuit.Circuit) string {
 	if atRest[c.PumpAtRest] == "" {
 		text = c.Name + ": what the prime movers do at rest is not stated"
 	}
+	told := map[string]bool{} // several cylinders may move one axis
 	for i := range c.Blocks {
 		b := &c.Blocks[i]
-		if h := b.Word("hold"); h != "" {
+		if h := b.Word("hold"); h != "" && !told[b.Word("axis")] {
+			told[b.Word("axis")] = true
 			text += fmt.Sprintf("; axis %s is held by the %s", b.Word("axis"), h)
 		}
 	}
