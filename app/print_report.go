@@ -87,6 +87,8 @@ func printCircuit(w io.Writer, c audit.CircuitPage) {
 		}
 		table(w, rows)
 		auditTable(w, d.Losses)
+		auditTable(w, d.Work)
+		auditTable(w, d.Measured)
 	}
 }
 

@@ -52,6 +52,7 @@ type DutyRun struct {
 	Peak        circuit.Peak
 	Shortfalls  []circuit.Shortfall
 	Gates       []circuit.Gate // of drives, motors and held axes
+	Measured    []Measurement
 	Plot        *Plot
 	Operating   map[string][]Operating // states of the displacement machines, by block
 }
@@ -204,6 +205,10 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	if c.HasSlowStates() { // a period may be several cycles: the plot keeps the first of them
 		receivers[2] = &until{plot, series.T[steps-1]}
 	}
+	compared := newMeters(c, series)
+	if compared != nil {
+		receivers = append(receivers, compared)
+	}
 	table, err := j.openTable(c, r, number)
 	if err != nil {
 		return err
@@ -238,6 +243,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	r.Cycles = cycles
 	r.Peak, r.Shortfalls, r.Gates = watch.PeakPressure(), watch.Shortfalls(cycles), watch.Gates()
 	r.Operating = operation.all()
+	r.Measured, r.Plot.Measured = compared.results(), measuredTracks(r.Duty, compared)
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())
 	return nil

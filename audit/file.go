@@ -82,6 +82,8 @@ const Format = "barlitre/1"
 //	                              cycle, rounded to 1, 2 or 5, at most 10 ms; 0 s: rows only
 //	  points: {t: [0 s, 2 s], ram.speed: [0 m/s, 0.15 m/s], "ram.load [kN]": [5, 5]}
 //	  phases: {approach: 0 s, press: 2.1 s}
+//	  standstill: {ram: 1 mm/s}   speed up to which an axis counts as standing; when not
+//	                              given 0.1 % of its highest speed in the duty
 //	  note: text
 //	circuits:
 //	- name: As found
@@ -95,8 +97,16 @@ const Format = "barlitre/1"
 //
 // In place of points may stand "file: press.csv", a table beside the audit file (or
 // in a folder below it) whose head has the same names with their units: see
-// recording.ReadTable. A track is axis.speed, axis.position, axis.load,
-// axis.command, or block.command for a block that is commanded by itself.
+// recording.ReadTable. A recording with names of its own is told by columns, track by
+// track, with the unit where its head has none; columns not named are left out:
+//
+//	file: press.csv
+//	columns: {t: "time [s]", ram.speed: "v1 [mm/s]", ram.load: "F1 [kN]"}
+//
+// A track is axis.speed, axis.position, axis.load,
+// axis.command, or block.command for a block that is commanded by itself. A track of a
+// measuring point, X1.pressure or Q1.flow, is what was measured there: it changes nothing
+// and is compared with what is computed (see Measurement).
 //
 // The measured points of a pump or motor stand in such a table too; its head may be written as the test bench does it, see
 // machines.ReadPoints. A block names it as points: pump.csv.

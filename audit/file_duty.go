@@ -49,7 +49,7 @@ func nameOf(item *yaml.Node) (string, *yaml.Node) {
 
 func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 	s := scope{duty: name, where: fmt.Sprintf("duty %q", name)}
-	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "points", "file", "phases")
+	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "standstill", "points", "file", "columns", "phases")
 	d := &duty.Duty{Name: name}
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
@@ -63,6 +63,7 @@ func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 	}
 	d.Repeats = r.flag(s, f, "repeats", true)
 	d.Sampled = !r.flag(s, f, "instants", true)
+	d.Standstill = r.standstill(s, f["standstill"].value)
 	before := len(r.found)
 	src, at := r.points(s, d, f, n)
 	if step, ok := r.optional(s, f, "step", units.Time); !ok {
@@ -104,6 +105,37 @@ func defaultStep(cycle float64) float64 {
 	return math.Min(0.01, round*math.Pow(10, exp))
 }
 
+// standstill reads the speeds up to which axes count as standing.
+func (r *reader) standstill(s scope, n *yaml.Node) map[string]float64 {
+	out := map[string]float64{}
+	in := s.in("standstill")
+	for _, e := range r.entries(s, n, "standstill") {
+		k, known := r.axisKind(e.key)
+		if !known {
+			if !r.axes[e.key] { // else its kind was faulty, said already
+				r.bad(in, e.at, e.key, "there is no axis %q%s", e.key, guess(e.key, r.axisNamesKnown()))
+			}
+			continue
+		}
+		v, ok := r.quantity(in, e.value, e.key, duty.Speed.Dim(k))
+		if ok && v.SI < 0 {
+			r.bad(in, e.value, e.key, "is %s, must not be below 0", v.Text)
+		}
+		out[e.key] = v.SI
+	}
+	return out
+}
+
+// axisKind returns the kind of an axis by its name.
+func (r *reader) axisKind(name string) (duty.AxisKind, bool) {
+	for _, a := range r.file.Axes {
+		if a.Name == name {
+			return a.Kind, true
+		}
+	}
+	return 0, false
+}
+
 // points reads the rows, typed or from a recording. It returns where each track
 // stands, by its name; "" is for the duty as a whole.
 func (r *reader) points(s scope, d *duty.Duty, f map[string]entry, n *yaml.Node) (Source, map[string]*yaml.Node) {
@@ -113,9 +145,12 @@ func (r *reader) points(s scope, d *duty.Duty, f map[string]entry, n *yaml.Node)
 	case typed && recorded:
 		r.bad(s, file.at, "file", "points and file are both given; keep one")
 	case typed:
+		if c, ok := f["columns"]; ok {
+			r.bad(s, c.at, "columns", "are of a file; points name their tracks themselves")
+		}
 		return Source{}, r.typed(s, d, pts)
 	case recorded:
-		return r.recorded(s, d, file.value), map[string]*yaml.Node{"": file.value}
+		return r.recorded(s, d, file.value, f["columns"]), map[string]*yaml.Node{"": file.value}
 	default:
 		r.bad(s, n, "points", "are missing; write points: {t: [0 s, ...], ...} or file: name.csv")
 	}
@@ -204,8 +239,6 @@ func (r *reader) keep(d *duty.Duty, name string, values []float64) {
 
 var trackWords = []string{duty.Speed.String(), duty.Position.String(), duty.Load.String(), duty.Command.String()}
 
-var blockDims = map[duty.What]units.Dim{duty.Command: units.Ratio, duty.SetPressure: units.Pressure, duty.SetFlow: units.Flow}
-
 // column finds the quantity that a column of a duty holds.
 func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units.Dim, bool) {
 	if name == "t" {
@@ -217,45 +250,27 @@ func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units
 		r.bad(s, n, name, "is not a track; write t, or an axis and one of %s, as in %q", strings.Join(trackWords, ", "), "ram.speed")
 		return 0, false
 	}
-	for _, a := range r.file.Axes {
-		if a.Name != of {
-			continue
-		}
+	if k, ok := r.axisKind(of); ok {
 		if !w.OfAxis() {
-			r.bad(s, n, name, "%s is an axis; %s is for a pump with control: pq", of, what)
+			use := "a pump with control: pq"
+			if w.Measured() {
+				use = "a measuring point"
+			}
+			r.bad(s, n, name, "%s is an axis; %s is for %s", of, what, use)
 			return 0, false
 		}
-		return trackDim(a.Kind, w), true
+		return w.Dim(k), true
 	}
 	switch {
 	case r.axes[of]: // its kind was faulty, said already
 	case r.blocks[of] && w.OfBlock():
-		return blockDims[w], true
+		return w.Dim(duty.Linear), true
 	case r.blocks[of]:
-		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, %s is for an axis", of, what)
+		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, a measuring point a pressure or a flow; %s is for an axis", of, what)
 	default:
 		r.bad(s, n, name, "there is no axis or block %q%s", of, guess(of, r.axisNamesKnown()))
 	}
 	return 0, false
-}
-
-func trackDim(k duty.AxisKind, w duty.What) units.Dim {
-	rotary := k == duty.Rotary
-	switch {
-	case w == duty.Command:
-		return units.Ratio
-	case w == duty.Speed && rotary:
-		return units.AngularSpeed
-	case w == duty.Speed:
-		return units.Velocity
-	case w == duty.Position && rotary:
-		return units.Angle
-	case w == duty.Position:
-		return units.Length
-	case rotary:
-		return units.Torque
-	}
-	return units.Force
 }
 
 func (r *reader) axisNamesKnown() []string {

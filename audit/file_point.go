@@ -94,10 +94,10 @@ func (f *File) trackQuantity(track string) (units.Dim, bool) {
 	w, ok := duty.WhatNamed(what)
 	for _, a := range f.Axes {
 		if a.Name == of {
-			return trackDim(a.Kind, w), ok && w.OfAxis()
+			return w.Dim(a.Kind), ok && w.OfAxis()
 		}
 	}
-	return blockDims[w], ok && w.OfBlock()
+	return w.Dim(duty.Linear), ok && w.OfBlock()
 }
 
 func (f *File) pointAt(i int, track string, row int) (float64, bool) {

@@ -14,33 +14,35 @@ import (
 	"barlitre/machines/units"
 )
 
-// recorded reads the rows from a file beside the audit file.
-func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node) Source {
+// recorded reads the rows from a file beside the audit file. columns says which of its
+// columns are tracks; without it all are, under the names of tracks.
+func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node, columns entry) Source {
 	table, name := r.beside(s, n, "file")
 	if table == nil {
 		return Source{}
 	}
-	if table.Column("t") == nil {
-		r.bad(s, n, "file", "%s has no column t; name the time stamps %q in its head", name, "t [s]")
-	}
 	in := s
 	in.where = fmt.Sprintf("%s, %s", s.where, name)
-	for _, c := range table.Columns {
-		dim, ok := r.column(in, d, n, c.Name)
-		if !ok {
-			continue
+	var tracks []recordedTrack
+	if columns.at == nil {
+		for i := range table.Columns {
+			c := &table.Columns[i]
+			tracks = append(tracks, recordedTrack{c.Name, c, c.Unit, n})
 		}
-		u, ok := units.Find(c.Unit, dim)
-		if !ok {
-			_, err := units.ParseUnit(c.Unit, dim)
-			r.bad(in, n, c.Name, "%v, between brackets in the head", err)
-			continue
-		}
-		si := make([]float64, len(c.Values))
-		for i, x := range c.Values {
-			si[i] = u.ToSI(x)
-		}
-		r.keep(d, c.Name, si)
+	} else {
+		tracks = r.columns(s, table, name, columns.value)
+	}
+	timed := false
+	for _, tr := range tracks {
+		timed = timed || tr.name == "t"
+		r.track(in, d, tr)
+	}
+	switch {
+	case timed:
+	case columns.at != nil:
+		r.bad(s, columns.at, "columns", "do not say which one holds the time stamps; write t: \"time [s]\"")
+	default:
+		r.bad(s, n, "file", "%s has no column t; name the time stamps %q in its head, or say with columns what its columns are", name, "t [s]")
 	}
 	return Source{File: name, SHA256: table.SHA256}
 }
@@ -56,6 +58,65 @@ func (r *reader) beside(s scope, n *yaml.Node, key string) (table *recording.Tab
 		return nil, name
 	}
 	return r.table(s, n, key, name), name
+}
+
+// recordedTrack is a column of a recording as a track.
+type recordedTrack struct {
+	name string
+	*recording.Column
+	unit string
+	at   *yaml.Node
+}
+
+// columns reads which column is which track, as in ram.load: "F1 [kN]". The unit may
+// stand here or in the head of the recording.
+func (r *reader) columns(s scope, table *recording.Table, file string, n *yaml.Node) (out []recordedTrack) {
+	in := s.in("columns")
+	var heads []string
+	for _, c := range table.Columns {
+		heads = append(heads, c.Name)
+	}
+	for _, e := range r.entries(s, n, "columns") {
+		text, ok := r.scalar(in, e.value, e.key, "the name of a column")
+		if !ok {
+			continue
+		}
+		name, unit, ok := recording.SplitHead(text)
+		c := table.Column(name)
+		switch {
+		case !ok:
+			r.bad(in, e.value, e.key, "write the name of the column and its unit between brackets, as in %q", "F1 [kN]")
+		case c == nil:
+			r.bad(in, e.value, e.key, "%s has no column %q%s", file, name, guess(name, heads))
+		case unit != "" && c.Unit != "" && unit != c.Unit:
+			r.bad(in, e.value, e.key, "is in %s here and in %s in the head of %s; keep one", unit, c.Unit, file)
+		default:
+			if unit == "" {
+				unit = c.Unit
+			}
+			out = append(out, recordedTrack{e.key, c, unit, e.value})
+		}
+	}
+	return out
+}
+
+// track keeps a column of a recording, in SI.
+func (r *reader) track(s scope, d *duty.Duty, tr recordedTrack) {
+	dim, ok := r.column(s, d, tr.at, tr.name)
+	if !ok {
+		return
+	}
+	u, ok := units.Find(tr.unit, dim)
+	if !ok {
+		_, err := units.ParseUnit(tr.unit, dim)
+		r.bad(s, tr.at, tr.name, "%v, between brackets in the head", err)
+		return
+	}
+	si := make([]float64, len(tr.Values))
+	for i, x := range tr.Values {
+		si[i] = u.ToSI(x)
+	}
+	r.keep(d, tr.name, si)
 }
 
 // table reads a recording, once.

@@ -39,6 +39,7 @@ func (k *Track) At(x float64) float64 {
 type Plot struct {
 	Signals  []Track // by Compiled.Signals
 	Powers   []Track // W, by Compiled.Channels
+	Measured []Track // what the duty says was measured; Name is that of the signal it belongs to
 	Channels []circuit.Channel
 	Thinned  bool
 }

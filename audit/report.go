@@ -71,6 +71,9 @@ type DutyPage struct {
 	Figures []Figure
 	Losses  Table
 	Gates   Table // what it asks of drives, motors and held axes; no rows where there is nothing to ask
+	Work    Table // by axis; no rows for a single one
+	// Measured channels against computed ones; no rows without measuring.
+	Measured Table
 }
 
 // Table is a table of printed cells. The first column is text, the others are numbers.

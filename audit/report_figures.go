@@ -18,7 +18,7 @@ const (
 
 func dutyPage(p printer, d *DutyRun) DutyPage {
 	b := d.Balance
-	page := DutyPage{Name: d.Duty.Name, Losses: lossTable(p, b), Gates: gateTable(d.Gates)}
+	page := DutyPage{Name: d.Duty.Name, Losses: lossTable(p, b), Work: workTable(p, b), Gates: gateTable(d.Gates), Measured: measuredTable(p, d.Measured)}
 	add := func(name string, v float64, text string, c Calculation) {
 		page.Figures = append(page.Figures, Figure{name, v, text, c})
 	}

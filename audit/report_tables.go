@@ -103,6 +103,23 @@ func lossTable(p printer, b *Balance) Table {
 	return t
 }
 
+// workTable splits the work of a cycle by axis, where there are several.
+func workTable(p printer, b *Balance) Table {
+	t := Table{Title: "Work by axis", Head: []string{"a cycle", "against its load", "taken from its driving load"}}
+	if len(b.Work) < 2 {
+		return t
+	}
+	whole := b.SupplyIn.Total()
+	row := func(sum bool, name string, positive, negative Split) {
+		t.add(sum, name, p.energy(nothing(positive.Total(), whole)), p.energy(nothing(negative.Total(), whole)))
+	}
+	for _, w := range b.Work {
+		row(false, w.Axis, w.Positive, w.Negative)
+	}
+	row(true, "all axes", b.WorkPositive(), b.WorkNegative())
+	return t
+}
+
 // shown drops losses too small to print: below a billionth of what is drawn. A
 // result file holds them all.
 func shown(rows []LossRow, drawn float64) []LossRow {

@@ -18,7 +18,7 @@ func (s *Solution) assumptions(p printer) []string {
 		"All circuits are asked to do the same duty, axis by axis, at the load. What one cannot do is listed as a shortfall.",
 		fmt.Sprintf("Two works count as the same within %s.", units.Format(SameWork, units.Percent, 2)),
 		"Every time step is a steady balance of flows, torques and forces: compression of oil and opening times are left out.",
-		fmt.Sprintf("An axis stands when it is slower than %s of its highest speed.", units.Format(duty.StandstillShare, units.Percent, 2)),
+		fmt.Sprintf("An axis stands when it is slower than %s of its highest speed, unless the duty says another speed.", units.Format(duty.StandstillShare, units.Percent, 2)),
 		"A machine holds when every axis stands and one carries more than a tenth of the largest load of the duty; below that it idles.",
 	}
 	out = append(out, s.dutyAssumptions(p)...)
@@ -31,6 +31,15 @@ func (s *Solution) assumptions(p printer) []string {
 func (s *Solution) dutyAssumptions(p printer) []string {
 	var out []string
 	for _, d := range s.File.Duties {
+		for _, a := range s.File.Axes {
+			if v, ok := d.Standstill[a.Name]; ok {
+				dim := units.Velocity
+				if a.Kind == duty.Rotary {
+					dim = units.AngularSpeed
+				}
+				out = append(out, fmt.Sprintf("Duty %s: axis %s stands when it is slower than %s.", d.Name, a.Name, p.in(v, dim, 3)))
+			}
+		}
 		switch {
 		case d.Hours <= 0:
 			out = append(out, fmt.Sprintf("Duty %s has no hours a year and is left out of the year.", d.Name))
@@ -55,9 +64,11 @@ func restAssumption(c *circuit.Circuit) string {
 	if atRest[c.PumpAtRest] == "" {
 		text = c.Name + ": what the prime movers do at rest is not stated"
 	}
+	told := map[string]bool{} // several cylinders may move one axis
 	for i := range c.Blocks {
 		b := &c.Blocks[i]
-		if h := b.Word("hold"); h != "" {
+		if h := b.Word("hold"); h != "" && !told[b.Word("axis")] {
+			told[b.Word("axis")] = true
 			text += fmt.Sprintf("; axis %s is held by the %s", b.Word("axis"), h)
 		}
 	}

@@ -67,6 +67,7 @@ type DutyResult struct {
 	Peak           PeakResult        `json:"peak"`
 	Shortfall      []ShortfallResult `json:"shortfall"`
 	Gates          []GateResult      `json:"gates"`
+	Measured       []MeasuredResult  `json:"measured"`
 	Certificate    CertificateResult `json:"certificate"`
 }
 
@@ -76,9 +77,17 @@ type EnergyResult struct {
 	Returned     float64      `json:"returned"`
 	WorkPositive float64      `json:"work_positive"`
 	WorkNegative float64      `json:"work_negative"`
+	Work         []WorkResult `json:"work"`   // by axis, adds up to the two above
 	Stored       float64      `json:"stored"` // end minus start
 	HeatToOil    float64      `json:"heat_to_oil"`
 	Losses       []LossResult `json:"losses"`
+}
+
+// WorkResult is the work of one axis over a cycle.
+type WorkResult struct {
+	Axis     string  `json:"axis"`
+	Positive float64 `json:"J_positive"`
+	Negative float64 `json:"J_negative"`
 }
 
 // LossResult is one loss of a cycle.
@@ -117,6 +126,20 @@ type GateResult struct {
 	T         Number `json:"t_s"`
 	Passed    bool   `json:"passed"`
 	Reason    string `json:"reason"`
+}
+
+// MeasuredResult compares a measured channel with what is computed, at the rows of the
+// duty; see Measurement. Differences are measured less computed. Pa or m³/s by the point.
+type MeasuredResult struct {
+	Point      string `json:"point"`
+	Rows       int    `json:"rows"`
+	Measured   Number `json:"measured_mean"`
+	Computed   Number `json:"computed_mean"`
+	Difference Number `json:"difference_mean"`
+	NMBE       Number `json:"nmbe"`
+	CVRMSE     Number `json:"cv_rmse"`
+	Largest    Number `json:"largest_difference"`
+	At         Number `json:"largest_difference_at_s"`
 }
 
 // CertificateResult says how well the time steps are balanced.
@@ -166,13 +189,17 @@ func dutyResult(d *DutyRun) DutyResult {
 		Name: d.Duty.Name, HoursPerYear: d.Duty.Hours / units.Hour, CyclesAveraged: max(d.Cycles, 1), CycleS: b.Cycle, TimeSteps: b.Steps,
 		Energy: EnergyResult{SupplyIn: b.SupplyIn.Total(), Returned: b.Returned.Total(),
 			WorkPositive: b.WorkPositive().Total(), WorkNegative: b.WorkNegative().Total(),
-			Stored: b.StoredEnergy().Total(), HeatToOil: b.HeatToOil().Total(), Losses: []LossResult{}},
+			Stored: b.StoredEnergy().Total(), HeatToOil: b.HeatToOil().Total(), Work: []WorkResult{}, Losses: []LossResult{}},
 		Closure: b.Closure(),
 		Peak: PeakResult{Pressure: Number(d.Peak.Value), At: d.Peak.At, T: Number(d.Peak.T), UpperEstimate: d.Peak.UpperEstimate,
 			Shaft: Number(b.PeakShaft), Supply: Number(b.PeakSupply)},
 		Shortfall:   []ShortfallResult{},
 		Gates:       []GateResult{},
+		Measured:    []MeasuredResult{},
 		Certificate: CertificateResult{c.Unbalanced, Number(c.Worst), Number(c.Force), c.Fallbacks},
+	}
+	for _, w := range b.Work {
+		out.Energy.Work = append(out.Energy.Work, WorkResult{w.Axis, w.Positive.Total(), w.Negative.Total()})
 	}
 	for _, l := range b.Losses {
 		out.Energy.Losses = append(out.Energy.Losses, LossResult{l.Block, l.Kind, l.Sink, l.Energy.Total()})
@@ -180,6 +207,10 @@ func dutyResult(d *DutyRun) DutyResult {
 	for _, g := range d.Gates {
 		out.Gates = append(out.Gates, GateResult{g.Block, g.Name, g.Parameter, Number(g.Unit.FromSI(g.Value)), Number(g.Unit.FromSI(g.Limit)),
 			g.Unit.Symbol, Number(g.T), g.Passed, g.Reason})
+	}
+	for _, m := range d.Measured {
+		out.Measured = append(out.Measured, MeasuredResult{m.Point, m.Rows, Number(m.Measured), Number(m.Computed), Number(m.Difference),
+			Number(m.NMBE), Number(m.CVRMSE), Number(m.Largest), Number(m.At)})
 	}
 	for _, s := range d.Shortfalls {
 		out.Shortfall = append(out.Shortfall, shortfallResult(s))

@@ -11,7 +11,7 @@ var doubleRodKind = &Kind{
 		{Name: "B", Type: Oil, Text: "side of the rod that drives the load; oil in retracts"},
 	},
 	Params: append([]Param{
-		{Key: "axis", Title: "Axis", Type: AxisRef, Need: true, Text: "axis of the duty that it moves"},
+		{Key: "axis", Title: "Axis", Type: AxisRef, Need: true, Text: "axis of the duty that it moves; several cylinders on one axis are joined rigidly and share its load"},
 		{Key: "hold", Title: "Held by", Type: Choice, Choices: []string{"valve", "pump", "brake"}, Need: true, Text: "what holds the axis at standstill"},
 		{Key: "bore", Title: "Bore", Symbol: "d1", Dim: units.Length, Need: true, Above: true, Max: 2, Text: "piston diameter"},
 		{Key: "rod", Title: "Rod", Symbol: "d2", Dim: units.Length, Need: true, Max: 2, Text: "diameter of the rod on side B, below the bore"},

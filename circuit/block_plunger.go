@@ -10,7 +10,7 @@ var plungerKind = &Kind{
 		{Name: "A", Type: Oil, Text: "oil in extends"},
 	},
 	Params: append([]Param{
-		{Key: "axis", Title: "Axis", Type: AxisRef, Need: true, Text: "axis of the duty that it moves"},
+		{Key: "axis", Title: "Axis", Type: AxisRef, Need: true, Text: "axis of the duty that it moves; several cylinders on one axis are joined rigidly and share its load"},
 		{Key: "hold", Title: "Held by", Type: Choice, Choices: []string{"valve", "pump", "brake"}, Need: true, Text: "what holds the axis at standstill"},
 		{Key: "diameter", Title: "Diameter", Symbol: "d", Dim: units.Length, Need: true, Above: true, Max: 2, Text: "of the plunger"},
 	}, strokeParams("share of pA times the area that is lost in the seals")...),

@@ -10,7 +10,7 @@ import (
 // valveKind is a 4/3 directional or proportional valve.
 var valveKind = &Kind{
 	Name: kindValve, Title: "Directional valve 4/3", Group: "valves",
-	Text: "Four edges, any centre. With `follows` it throttles so that the axis moves as the duty says (the same opening on both edges); with `directs` it only chooses the direction, fully open; otherwise a track of the duty commands it.",
+	Text: "Four edges, any centre. With `follows` it throttles so that the axis moves as the duty says (the same opening on both edges, or with `meter_out: separate` one of its own on the edge to tank); with `directs` it only chooses the direction, fully open; otherwise a track of the duty commands it.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "supply"},
 		{Name: "A", Type: Oil, Text: "to the actuator"},
@@ -30,6 +30,8 @@ var valveKind = &Kind{
 		{Key: "flow_AT", Title: "Nominal flow A to T", Symbol: "qAT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
 		{Key: "flow_BT", Title: "Nominal flow B to T", Symbol: "qBT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
 		{Key: "flow_centre", Title: "Nominal flow in the centre", Symbol: "qC", Dim: units.Flow, Above: true, Max: 10, Text: "of each path that is open in the centre; default: as the edges"},
+		{Key: "meter_out", Title: "Edge to tank", Type: Choice, Default: "coupled", Choices: []string{"coupled", "separate"}, Text: "coupled: one spool, the same opening on both edges; separate: an edge of its own (independent metering), open as far as the pressure at the port that is fed stays at in_pressure"},
+		{Key: "in_pressure", Title: "Pressure kept at the port fed", Symbol: "pi", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "enough to keep the fed side full, our choice", Max: 100e5, Text: "with meter_out: separate, while the load drives"},
 		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
 	},
 	Losses: []LossKind{
@@ -37,8 +39,11 @@ var valveKind = &Kind{
 		{"metering A-T", ToOil, "P = (pA − pT)·q"}, {"metering B-T", ToOil, "P = (pB − pT)·q"},
 		{"unloaded circulation", ToOil, "P = (pP − pT)·q in the centre"},
 	},
-	Equations: []Equation{{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open; regenerative: those are P-A and P-B", "orifice law from the nominal point of the edge"}},
-	Rating:    "rating",
+	Equations: []Equation{
+		{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open; regenerative: those are P-A and P-B", "orifice law from the nominal point of the edge"},
+		{"separate: w on the edge to tank; w = 1 while the port fed is above pi, else it is at pi", "ideal meter-out control, complementarity"},
+	},
+	Rating: "rating",
 	Symbol: func(b *Block) string {
 		centre := b.Word("centre")
 		if centre == "" {
@@ -53,7 +58,18 @@ var valveKind = &Kind{
 		}
 		return name + centre
 	},
-	check: checkValve,
+	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
+		checkValve(k, b, bad)
+		separate := k.WordOf(b, "meter_out") == "separate"
+		switch _, given := b.Values["in_pressure"]; {
+		case separate && follows(b) == "":
+			bad(Stops, "meter_out", "an edge to tank of its own is for a valve that follows an axis; set follows, or meter_out: coupled")
+		case separate && b.Word("extend") == "regenerative":
+			bad(Stops, "meter_out", "the regenerative position has no edge to tank; keep one of extend: regenerative and meter_out: separate")
+		case given && !separate:
+			bad(Warns, "in_pressure", "it only counts with meter_out: separate")
+		}
+	},
 	build: func(k *compiler, b *Block) model {
 		m := newValve(k, b, "unloaded circulation")
 		return &m
@@ -96,10 +112,12 @@ type valveModel struct {
 	centre     string
 	q          [4]slot
 	open       slot // opening of a valve that follows an axis
+	out        slot // opening of a separate edge to tank
 	qN, dN, qC int
+	inP        int
 	per        [edges]int
 	sig        [4]int // port flows P A B T
-	sigU       int
+	sigU, sigW int
 	loss       [edges]int
 	around     int
 
@@ -112,6 +130,7 @@ type valveModel struct {
 	u      float64 // commanded opening
 	now    bool    // throttling is found in this step
 	was    float64
+	kept   float64 // scaled pressure kept at the port fed
 }
 
 type branch struct {
@@ -123,7 +142,7 @@ type branch struct {
 
 // newValve makes the edges of a valve; around names the loss of what passes beside them.
 func newValve(k *compiler, b *Block, around string) valveModel {
-	m := valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, open: noSlot,
+	m := valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, open: noSlot, out: noSlot, sigW: -1,
 		regen: KindNamed(b.Kind).WordOf(b, "extend") == "regenerative", centre: KindNamed(b.Kind).WordOf(b, "centre"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), qC: k.param(b, "flow_centre"),
 		per:  [edges]int{k.param(b, "flow_PA"), k.param(b, "flow_PB"), k.param(b, "flow_AT"), k.param(b, "flow_BT")},
 		sig:  [4]int{k.port(b, "P"), k.port(b, "A"), k.port(b, "B"), k.port(b, "T")},
@@ -159,6 +178,10 @@ func newValve(k *compiler, b *Block, around string) valveModel {
 	if m.tracks {
 		m.open = k.unknown(otherRow, b.ID+" opening")
 	}
+	if KindNamed(b.Kind).WordOf(b, "meter_out") == "separate" {
+		m.out, m.inP = k.unknown(otherRow, b.ID+" edge to tank"), k.param(b, "in_pressure")
+		m.sigW = k.signal(b, "w", "opening of the edge to tank", units.Ratio)
+	}
 	return m
 }
 
@@ -172,6 +195,9 @@ func (m *valveModel) bind(b *binding) {
 	m.mid = throatOf(b.get(m.qC, qN)/b.scales.q, dp)
 	if m.open >= 0 {
 		b.bound.Lo[m.open], b.bound.Hi[m.open] = leastOpening, 1
+	}
+	if m.out >= 0 {
+		m.kept = b.p[m.inP] / b.scales.p
 	}
 	m.was = math.NaN()
 }
@@ -220,6 +246,13 @@ func (m *valveModel) begin(s *step) {
 			s.set(m.open, 0)
 		}
 	}
+	if m.out >= 0 {
+		if m.dir != 0 {
+			s.bounds(m.out, leastOpening, 1)
+		} else {
+			s.set(m.out, 0)
+		}
+	}
 	if m.dir != m.was { // another position: start its edges anew
 		m.start(s, s.x)
 		m.was = m.dir
@@ -263,6 +296,9 @@ func (m *valveModel) start(s *step, x []float64) {
 	if m.now {
 		x[m.open] = 0.3
 	}
+	if m.out >= 0 && m.dir != 0 {
+		x[m.out] = 0.3
+	}
 }
 
 func (m *valveModel) cold(s *step, level int, x []float64) {
@@ -300,12 +336,16 @@ func (m *valveModel) eval(e *eval) {
 		}
 		// Off the centre the row is a flow, q = u·√…, so that closing the valve is no singular case.
 		full, slope := br.t.flow(e.val(br.a) - e.val(br.b))
+		u, of := u, m.open
+		if i == 1 && m.out >= 0 {
+			u, of = e.val(m.out), m.out
+		}
 		e.add(q, v-u*full)
 		e.d(q, q, 1)
 		e.d(q, br.a, -u*slope)
 		e.d(q, br.b, u*slope)
-		if m.now {
-			e.d(q, m.open, -full)
+		if m.now || of == m.out {
+			e.d(q, of, -full)
 		}
 	}
 	if m.open >= 0 {
@@ -316,6 +356,15 @@ func (m *valveModel) eval(e *eval) {
 		} else {
 			e.add(m.open, e.val(m.open))
 			e.d(m.open, m.open, 1)
+		}
+	}
+	if m.out >= 0 {
+		if m.dir == 0 {
+			e.add(m.out, e.val(m.out))
+			e.d(m.out, m.out, 1)
+		} else { // a wider way out lets the pressure at the port fed fall
+			e.add(m.out, m.kept-e.val(m.loadPort()))
+			e.d(m.out, m.loadPort(), -1)
 		}
 	}
 	if m.ls >= 0 {
@@ -373,4 +422,7 @@ func (m *valveModel) book(k *booking) {
 		u = m.dir * m.opening(&k.eval)
 	}
 	k.put(m.sigU, u)
+	if m.out >= 0 {
+		k.put(m.sigW, k.val(m.out))
+	}
 }

@@ -243,6 +243,10 @@ func (k *checker) dutyOf(d *duty.Duty) {
 func (k *checker) takes(d *duty.Duty, b *Block, w duty.What) {
 	control := KindNamed(b.Kind).WordOf(b, "control")
 	switch {
+	case w.Measured():
+		if kind := map[duty.What]string{duty.MeasuredPressure: kindPressurePoint, duty.MeasuredFlow: kindFlowPoint}[w]; b.Kind != kind {
+			k.say(Stops, b, "", "duty %q has a measured track %s.%s, but %s is a %s; put a %s there and name that", d.Name, b.ID, w, b.ID, strings.ToLower(KindNamed(b.Kind).Title), strings.ToLower(KindNamed(kind).Title))
+		}
 	case w == duty.SetPressure || w == duty.SetFlow:
 		if !isPQ(b) {
 			k.say(Stops, b, "control", "duty %q has a track %s.%s, but only a pump with control: pq takes one; set that, or drop the track", d.Name, b.ID, w)

@@ -57,9 +57,7 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 	case duty.TooMany:
 		bad("duty %q gives motion, load and command for axis %s; give exactly two of them, the third is found", d.Name, a.Name)
 	}
-	if len(movers) > 1 {
-		bad("axis %s has two actuators, %s; one block an axis, or join their shafts", a.Name, join(ids(movers), "and"))
-	}
+	k.joined(a, movers, bad)
 	if len(movers) == 0 {
 		if given != duty.None || len(follow) > 0 {
 			who := ""
@@ -88,7 +86,30 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 		k.fed(follow[0])
 	}
 	if given == duty.MotionLoad {
-		k.canMove(act, d, a)
+		for _, b := range movers {
+			k.canMove(b, d, a)
+		}
+	}
+}
+
+// joined checks that several actuators of an axis can move as one: cylinders joined
+// rigidly can, machines that turn are joined by their shafts.
+func (k *checker) joined(a duty.Axis, movers []*Block, bad func(format string, args ...any)) {
+	if len(movers) < 2 {
+		return
+	}
+	first := KindNamed(movers[0].Kind).WordOf(movers[0], "hold")
+	for _, b := range movers {
+		if !movesAlong(b.Kind) {
+			bad("axis %s is moved by %s; only cylinders can move an axis together. Name the axis at one motor and join the shafts of the others to it by a line", a.Name, join(ids(movers), "and"))
+			return
+		}
+		if hold := KindNamed(b.Kind).WordOf(b, "hold"); hold != first {
+			k.say(Stops, b, "hold", "it moves axis %s together with %s, which is held by the %s; give both the same hold", a.Name, movers[0].ID, first)
+		}
+		if _, given := b.Values["start"]; given {
+			k.say(Stops, b, "start", "%s move axis %s together, and their ends of stroke are not followed; take start out, stroke alone still checks the way of the duty", join(ids(movers), "and"), a.Name)
+		}
 	}
 }
 

@@ -45,6 +45,7 @@ type mover struct {
 	given  duty.Given
 	hold   string
 	rotary bool
+	sizes  []pistonSize              // of its cylinders, which move as one
 	volume func(p []float64) float64 // m² or m³/rad per unit of axis speed
 	slip   func(p []float64) float64 // leakage past the actuator times viscosity [m³], nil = none
 	fed    bool                      // a control follows it

@@ -14,6 +14,11 @@ func (k *compiler) placeMover(b *Block) {
 		return
 	}
 	m := &k.movers[i]
+	if m.block != "" { // a cylinder more on the same axis: all move as one, the first leads
+		m.sizes = append(m.sizes, k.pistonSize(b))
+		k.moved(b)
+		return
+	}
 	m.block = b.ID
 	m.hold = KindNamed(b.Kind).WordOf(b, "hold")
 	switch {
@@ -24,17 +29,36 @@ func (k *compiler) placeMover(b *Block) {
 			m.speed = k.unknown(forceRow, b.ID)
 			m.sigma = k.unknown(otherRow, b.ID+" friction")
 		}
-		size := k.pistonSize(b)
-		m.volume = func(p []float64) float64 { A, _ := size.areas(p); return A }
-		if v, _, _ := KindNamed(b.Kind).Value(b, "mass"); v.SI > 0 {
-			k.inertia = true
-		}
+		m.sizes = []pistonSize{k.pistonSize(b)}
+		m.volume = func(p []float64) float64 { return m.boreArea(p) }
+		k.moved(b)
 	case b.Kind == kindHydraulicMotor:
 		k.placeMotorMover(m, b)
 	}
 }
 
+// moved notes the mass of a cylinder.
+func (k *compiler) moved(b *Block) {
+	if v, _, _ := KindNamed(b.Kind).Value(b, "mass"); v.SI > 0 {
+		k.inertia = true
+	}
+}
+
+// boreArea is the area on side A of all cylinders of an axis [m²].
+func (m *mover) boreArea(p []float64) float64 {
+	sum := 0.0
+	for _, s := range m.sizes {
+		A, _ := s.areas(p)
+		sum += A
+	}
+	return sum
+}
+
+// pistonModel is one cylinder. Several on one axis are joined rigidly: they share speed,
+// friction sign and the row of forces, which the first of them leads.
 type pistonModel struct {
+	mover                          *mover
+	lead, alone                    bool
 	axis                           int
 	pA, pB, v, sigma               slot
 	size                           pistonSize
@@ -47,8 +71,9 @@ type pistonModel struct {
 	plunger                        bool
 
 	A, B, ratio, fc1, kp1, visc1, kl1, m float64 // bound; A [m²], the rest scaled by A·p or flow
+	share                                float64 // of the area of all cylinders of the axis
 	way, first                           float64 // stroke and start, m
-	force, scale, load, accel            float64 // A·p; of the step
+	force, scale, load, accel            float64 // A·p; flow of the axis by speed; of the step
 	lo, hi                               float64 // bounds of the speed that the ends set
 	steep, rests                         float64 // of the row of σ: slope; 1 on an end
 }
@@ -58,8 +83,8 @@ const heldFlow = 1e-8
 
 func buildPiston(k *compiler, b *Block) model {
 	i := k.axisOf[b.Word("axis")]
-	mv := k.movers[i]
-	m := &pistonModel{axis: i, pA: k.node(b, "A"), pB: k.node(b, "B"), v: mv.speed, sigma: mv.sigma, hold: mv.hold, plunger: b.Kind == kindPlunger,
+	mv := &k.movers[i]
+	m := &pistonModel{mover: mv, lead: mv.block == b.ID, alone: len(mv.sizes) == 1, axis: i, pA: k.node(b, "A"), pB: k.node(b, "B"), v: mv.speed, sigma: mv.sigma, hold: mv.hold, plunger: b.Kind == kindPlunger,
 		size: k.pistonSize(b), fc: k.param(b, "friction"), kp: k.param(b, "pressure_friction"),
 		visc: k.param(b, "viscous"), kl: k.param(b, "leakage"), mass: k.param(b, "mass"), stroke: -1, start: -1,
 		qA: k.port(b, "A"), qB: k.port(b, "B"),
@@ -85,8 +110,10 @@ func (m *pistonModel) clone() model { c := *m; return &c }
 func (m *pistonModel) bind(b *binding) {
 	m.A, m.B = m.size.areas(b.p)
 	m.ratio = m.B / m.A
+	all := m.mover.boreArea(b.p)
+	m.share = m.A / all
 	m.force = m.A * b.scales.p
-	m.scale = m.A / b.scales.q
+	m.scale = all / b.scales.q
 	m.fc1 = b.p[m.fc] / m.force
 	m.kp1 = b.p[m.kp] * m.ratio
 	if m.plunger {
@@ -96,7 +123,7 @@ func (m *pistonModel) bind(b *binding) {
 	m.kl1 = b.get(m.kl, 0) * b.scales.p / b.scales.q
 	m.m = b.p[m.mass]
 	m.way, m.first = b.get(m.stroke, 0), b.get(m.start, 0)
-	if m.sigma >= 0 {
+	if m.sigma >= 0 && m.lead {
 		b.bound.Lo[m.sigma], b.bound.Hi[m.sigma] = -1, 1
 	}
 }
@@ -148,8 +175,23 @@ func (m *pistonModel) reach() (axis int, in, out, unit float64, has bool) {
 
 func (m *pistonModel) begin(s *step) {
 	a := &s.axes[m.axis]
-	m.load = (a.load + m.m*a.accel) / m.force
 	m.accel = a.accel
+	m.load = m.m * a.accel
+	if m.lead {
+		m.load += a.load
+		m.govern(s, a)
+	}
+	m.load *= m.share / m.force
+	if a.standing && m.hold == "valve" {
+		s.restAt(m.pA, math.Max(a.load, 0)*m.share/m.A)
+		if m.B > 0 {
+			s.restAt(m.pB, math.Max(-a.load, 0)*m.share/m.B)
+		}
+	}
+}
+
+// govern sets what speed and friction of the axis may be.
+func (m *pistonModel) govern(s *step, a *axisStep) {
 	m.ends(s, a)
 	switch {
 	case a.standing:
@@ -172,20 +214,14 @@ func (m *pistonModel) begin(s *step) {
 			s.x[m.v] = math.Max(m.lo, math.Min(m.hi, s.x[m.v]))
 		}
 	}
-	if a.standing && m.hold == "valve" {
-		s.restAt(m.pA, math.Max(a.load, 0)/m.A)
-		if m.B > 0 {
-			s.restAt(m.pB, math.Max(-a.load, 0)/m.B)
-		}
-	}
 }
 
 func (m *pistonModel) eval(e *eval) {
-	v := e.val(m.v)
-	e.add(m.pA, v)
-	e.d(m.pA, m.v, 1)
-	e.add(m.pB, -m.ratio*v)
-	e.d(m.pB, m.v, -m.ratio)
+	v, k := e.val(m.v), m.share // of the axis; this cylinder's part of its flow and force
+	e.add(m.pA, k*v)
+	e.d(m.pA, m.v, k)
+	e.add(m.pB, -k*m.ratio*v)
+	e.d(m.pB, m.v, -k*m.ratio)
 	if m.kl1 > 0 {
 		e.conduct(m.pA, m.pB, m.kl1)
 	}
@@ -194,11 +230,14 @@ func (m *pistonModel) eval(e *eval) {
 	}
 	pA, pB, sg := e.val(m.pA), e.val(m.pB), e.val(m.sigma)
 	dry, slope := m.fc1+m.kp1*math.Abs(pA-pB), m.kp1*sign(pA-pB)
-	e.add(m.v, m.load+sg*dry+m.visc1*v-pA+m.ratio*pB)
-	e.d(m.v, m.v, m.visc1)
-	e.d(m.v, m.pA, -1+sg*slope)
-	e.d(m.v, m.pB, m.ratio-sg*slope)
-	e.d(m.v, m.sigma, dry)
+	e.add(m.v, m.load+k*(sg*dry+m.visc1*v-pA+m.ratio*pB))
+	e.d(m.v, m.v, k*m.visc1)
+	e.d(m.v, m.pA, k*(-1+sg*slope))
+	e.d(m.v, m.pB, k*(m.ratio-sg*slope))
+	e.d(m.v, m.sigma, k*dry)
+	if !m.lead {
+		return
+	}
 	// σ sits at 1 while v > 0, at −1 while v < 0, and anywhere between at v = 0.
 	e.add(m.sigma, -v*m.steep+sg*m.rests)
 	e.d(m.sigma, m.v, -m.steep)
@@ -211,15 +250,17 @@ func (m *pistonModel) book(k *booking) {
 		vs = 0 // what the resting leak lets through is no motion
 	}
 	v := vs / m.scale
+	viscous := m.visc1 * vs
+	vs *= m.share
 	pA, pB := k.pa(m.pA), k.pa(m.pB)
 	leak := m.kl1 * (k.val(m.pA) - k.val(m.pB))
 	k.put(m.qA, k.m3s(vs+leak))
 	k.put(m.qB, k.m3s(-m.ratio*vs-leak))
 	dry := (m.fc1 + m.kp1*math.Abs(k.val(m.pA)-k.val(m.pB))) * m.force
-	friction := k.val(m.sigma)*dry + m.visc1*vs*m.A*k.scales.p
+	friction := k.val(m.sigma)*dry + viscous*m.force
 	a := &k.step.axes[m.axis]
 	load := a.load
-	if a.given == duty.MotionCommand { // the load is what is left of the pressures
+	if a.given == duty.MotionCommand || !m.alone { // what is left of the pressures; its part of the load
 		load = pA*m.A - pB*m.B - friction - m.m*m.accel
 	}
 	k.put(m.sigV, v)
@@ -228,7 +269,15 @@ func (m *pistonModel) book(k *booking) {
 	k.lose(m.leakage, k.watts(leak*(k.val(m.pA)-k.val(m.pB))))
 	k.pow[m.work] += load * v
 	k.pow[m.store] += m.m * m.accel * v
-	a.speed, a.found = v, load
+	switch {
+	case a.given != duty.MotionCommand:
+		a.found = a.load
+	case m.lead:
+		a.found = load
+	default:
+		a.found += load
+	}
+	a.speed = v
 	if m.stroke >= 0 {
 		m.bookEnd(k, a, vs, pA*m.A-pB*m.B-load-m.m*m.accel-friction)
 	}

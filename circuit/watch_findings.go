@@ -157,10 +157,10 @@ func (w *Watch) accumulators(f *findings) {
 		case lo <= p0*1.0001:
 			f.add(Warns, b, "precharge", w.ext[i].tMin, "it runs empty: the pressure falls to its pre-charge of %s; lower the pre-charge or the band", show(p0-atm, units.Pressure))
 		case lo < 1.1*p0:
-			f.add(Note, b, "precharge", w.ext[i].tMin, "its lowest pressure %s is less than 1.1 times the pre-charge %s, both absolute; a bladder may strike its valve", show(lo-atm, units.Pressure), show(p0-atm, units.Pressure))
+			f.add(Note, b, "precharge", w.ext[i].tMin, "its lowest pressure %s is less than 1.1 times the pre-charge %s, both absolute at the gas temperature; a bladder may strike its valve (common practice p0 <= 0.9·p1; its maker's limits come first)", show(lo-atm, units.Pressure), show(p0-atm, units.Pressure))
 		}
 		if hi > 4*p0 {
-			f.add(Note, b, "precharge", w.ext[i].tMax, "its highest pressure %s is more than 4 times the pre-charge %s, both absolute; the pre-charge may be lost", show(hi-atm, units.Pressure), show(p0-atm, units.Pressure))
+			f.add(Note, b, "precharge", w.ext[i].tMax, "its highest pressure %s is more than 4 times the pre-charge %s, both absolute at the gas temperature; a bladder is folded too far or the pre-charge is lost (common practice p2 <= 4·p0; pistons stand more, its maker's limits come first)", show(hi-atm, units.Pressure), show(p0-atm, units.Pressure))
 		}
 	}
 }

@@ -98,15 +98,16 @@ func (s *Station) standstill(d *cycle.Duty) [][2]string {
 		return nil // said as findings
 	}
 	var out [][2]string
-	share := s.ctx.Local(units.Format(cycle.StandstillShare, units.Percent, 2))
 	for _, a := range d.Series(s.ctx.Doc().File().Axes, false).Axes {
 		dim := units.Velocity
 		if a.Axis.Kind == cycle.Rotary {
 			dim = units.AngularSpeed
 		}
 		if a.Top > 0 {
+			limit := d.StandsBelow(a.Axis.Name, a.Top)
+			share := s.ctx.Local(units.Format(limit/a.Top, units.Percent, 2))
 			out = append(out, [2]string{a.Axis.Name, fmt.Sprintf("Axis %s counts as standing below %s, %s of its highest speed %s.",
-				a.Axis.Name, s.slow(cycle.StandstillShare*a.Top, dim), share, s.ctx.Text(a.Top, dim, 3))})
+				a.Axis.Name, s.slow(limit, dim), share, s.ctx.Text(a.Top, dim, 3))})
 		} else if a.Speed != nil {
 			out = append(out, [2]string{a.Axis.Name, "Axis " + a.Axis.Name + " stands throughout."})
 		}

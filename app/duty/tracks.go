@@ -14,17 +14,9 @@ type track struct {
 	name   string // as in files: "ram.speed"; "t" for the time
 	of     string
 	what   string
+	says   string // asked or measured
 	unit   units.Unit
 	values []float64 // SI
-}
-
-// quantities of the tracks, for axes along a line and axes that turn.
-var quantities = map[cycle.What][2]units.Dim{
-	cycle.Speed:       {units.Velocity, units.AngularSpeed},
-	cycle.Position:    {units.Length, units.Angle},
-	cycle.Load:        {units.Force, units.Torque},
-	cycle.SetPressure: {units.Pressure, units.Pressure},
-	cycle.SetFlow:     {units.Flow, units.Flow},
 }
 
 // tracksOf returns time and tracks, axis by axis as the file lists them, then the
@@ -35,10 +27,14 @@ func (s *Station) tracksOf(d *cycle.Duty) []track {
 	known := map[string]bool{}
 	add := func(t cycle.Track, kind cycle.AxisKind) {
 		u := units.Percent
-		if dims, ok := quantities[t.What]; ok {
-			u = units.Preferred(dims[kind], sys)
+		if t.What != cycle.Command {
+			u = units.Preferred(t.What.Dim(kind), sys)
 		}
-		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), unit: u, values: t.Values})
+		says := "asked"
+		if t.What.Measured() {
+			says = "measured"
+		}
+		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), says: says, unit: u, values: t.Values})
 	}
 	for _, a := range s.ctx.Doc().File().Axes {
 		known[a.Name] = true
@@ -64,7 +60,7 @@ func (s *Station) fillPlot(d *cycle.Duty) {
 			role = figures.RoleInk
 		}
 		p.Lanes = append(p.Lanes, figures.Lane{Title: t.of + " " + t.what, Unit: t.unit.Label(), Zero: true,
-			Series: []figures.Series{{Name: "asked", X: inUnit(d.Time, s.tracks[0].unit), Y: inUnit(t.values, t.unit), Role: role}}})
+			Series: []figures.Series{{Name: t.says, X: inUnit(d.Time, s.tracks[0].unit), Y: inUnit(t.values, t.unit), Role: role}}})
 	}
 	s.plot.SetMin(fyne.NewSize(300, float32(60+62*len(p.Lanes))))
 	s.plot.SetPlot(p)

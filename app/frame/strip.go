@@ -90,7 +90,10 @@ func (s *strip) lanes(d *duty.Duty, axes []duty.Axis) figures.Plot {
 	lane := map[string]int{}
 	roles := []figures.Role{figures.RoleInk, figures.RoleGain, figures.RoleBar}
 	for _, tr := range d.Tracks {
-		dim := trackDim(tr.What, kind[tr.Of])
+		if tr.What.Measured() {
+			continue // it is no demand
+		}
+		dim := tr.What.Dim(kind[tr.Of])
 		u := units.Preferred(dim, s.f.settings.system)
 		key := fmt.Sprint(tr.What, dim)
 		i, ok := lane[key]
@@ -117,28 +120,6 @@ func (s *strip) lanes(d *duty.Duty, axes []duty.Axis) figures.Plot {
 		plot.Phases = append(plot.Phases, figures.Phase{Name: p.Name, From: p.From, To: to})
 	}
 	return plot
-}
-
-func trackDim(w duty.What, k duty.AxisKind) units.Dim {
-	switch {
-	case w == duty.Command:
-		return units.Ratio
-	case w == duty.SetPressure:
-		return units.Pressure
-	case w == duty.SetFlow:
-		return units.Flow
-	case w == duty.Load && k == duty.Rotary:
-		return units.Torque
-	case w == duty.Load:
-		return units.Force
-	case w == duty.Position && k == duty.Rotary:
-		return units.Angle
-	case w == duty.Position:
-		return units.Length
-	case k == duty.Rotary:
-		return units.AngularSpeed
-	}
-	return units.Velocity
 }
 
 func (s *strip) moved() { s.figure.Refresh() }

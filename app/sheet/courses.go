@@ -83,6 +83,12 @@ func (l *live) courses() []course {
 			roles[kind]++
 		}
 		out = append(out, q)
+		for j := range run.Plot.Measured {
+			if m := &run.Plot.Measured[j]; m.Name == k.Name {
+				q.name, q.prefix, q.tracks, q.role = "measured", "measured ", []*audit.Track{m}, figures.RoleHeat
+				out = append(out, q)
+			}
+		}
 	}
 	return out
 }

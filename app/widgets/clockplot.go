@@ -206,7 +206,7 @@ func (f *flag) place(text string, p figures.Palette, x, right, y float32) {
 	size := f.text.MinSize()
 	at := x + 5*k
 	if at+size.Width > right {
-		at = x - 5*k - size.Width
+		at = max(2*k, x-5*k-size.Width)
 	}
 	f.text.Move(fyne.NewPos(at, y))
 	f.text.Resize(size)

@@ -39,12 +39,11 @@ func (l *layout) energy() {
 			l.table(fromReport(c.States))
 		}
 		for _, d := range c.Duties {
-			t := fromReport(d.Losses)
-			t.title += ": " + d.Name
-			l.table(t)
-			if g := fromReport(d.Gates); len(g.rows) > 0 {
-				g.title += ": " + d.Name
-				l.table(g)
+			for _, of := range []audit.Table{d.Losses, d.Work, d.Gates, d.Measured} {
+				if t := fromReport(of); len(t.rows) > 0 {
+					t.title += ": " + d.Name
+					l.table(t)
+				}
 			}
 		}
 	}

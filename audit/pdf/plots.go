@@ -78,15 +78,6 @@ func (l *layout) plot(lanes []figures.Lane, d *duty.Duty) {
 	}
 }
 
-// dims names the quantity of a track, by linear and rotary axes.
-var dims = map[duty.What][2]units.Dim{
-	duty.Speed:       {units.Velocity, units.AngularSpeed},
-	duty.Position:    {units.Length, units.Angle},
-	duty.Load:        {units.Force, units.Torque},
-	duty.SetPressure: {units.Pressure, units.Pressure},
-	duty.SetFlow:     {units.Flow, units.Flow},
-}
-
 // asked returns the lanes of a duty: what it gives, axis by axis, and how a
 // circuit moved where it fell short.
 func (l *layout) asked(i int) []figures.Lane {
@@ -94,13 +85,17 @@ func (l *layout) asked(i int) []figures.Lane {
 	var lanes []figures.Lane
 	add := func(t duty.Track, kind duty.AxisKind) {
 		u := units.Percent
-		if pair, ok := dims[t.What]; ok {
-			u = units.Preferred(pair[kind], l.r.System)
+		if t.What != duty.Command {
+			u = units.Preferred(t.What.Dim(kind), l.r.System)
 		}
 		lane := figures.Lane{Title: t.Of + " " + t.What.String(), Unit: u.Label(), Zero: true}
 		lane.Series = []figures.Series{{Name: "asked", X: d.Time, Y: inUnit(t.Values, u), Role: figures.RoleInk}}
-		if t.What == duty.Speed {
+		switch {
+		case t.What == duty.Speed:
 			lane.Series = append(lane.Series, l.delivered(i, t.Of, u)...)
+		case t.What.Measured():
+			lane.Series[0].Name = "measured"
+			lane.Series = append(lane.Series, l.computed(i, audit.MeasuredSignal(t), u)...)
 		}
 		lanes = append(lanes, lane)
 	}
@@ -117,6 +112,20 @@ func (l *layout) asked(i int) []figures.Lane {
 		}
 	}
 	return lanes
+}
+
+// computed returns a signal in each circuit that has it.
+func (l *layout) computed(i int, signal string, u units.Unit) []figures.Series {
+	var out []figures.Series
+	for _, c := range l.s.Circuits {
+		if i >= len(c.Duties) || c.Duties[i].Plot == nil {
+			continue
+		}
+		if t := c.Duties[i].Plot.Signal(signal); t != nil {
+			out = append(out, figures.Series{Name: c.Circuit.Name + " computes", X: t.T, Y: inUnit(t.V, u), Role: circuitRole(c), Dash: true})
+		}
+	}
+	return out
 }
 
 // delivered returns the speed of an axis in each circuit that fell short of it.

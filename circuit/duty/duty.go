@@ -13,6 +13,8 @@ package duty
 import (
 	"fmt"
 	"math"
+
+	"barlitre/machines/units"
 )
 
 // AxisKind says whether an axis moves along a line or turns.
@@ -42,15 +44,17 @@ type What int
 
 // The quantities a track may give.
 const (
-	Speed       What = iota // m/s or rad/s
-	Position                // m or rad; speed is taken from it by central differences
-	Load                    // N or N·m
-	Command                 // −1..1: opening of a valve, setting of a pump, share of top speed of a motor
-	SetPressure             // Pa, >= 0; of a block
-	SetFlow                 // m³/s, >= 0; of a block
+	Speed            What = iota // m/s or rad/s
+	Position                     // m or rad; speed is taken from it by central differences
+	Load                         // N or N·m
+	Command                      // −1..1: opening of a valve, setting of a pump, share of top speed of a motor
+	SetPressure                  // Pa, >= 0; of a block
+	SetFlow                      // m³/s, >= 0; of a block
+	MeasuredPressure             // Pa; of a measuring point: compared with what is found, and no demand
+	MeasuredFlow                 // m³/s; of a measuring point, as MeasuredPressure
 )
 
-var whatNames = [...]string{"speed", "position", "load", "command", "set_pressure", "set_flow"}
+var whatNames = [...]string{"speed", "position", "load", "command", "set_pressure", "set_flow", "pressure", "flow"}
 
 func (w What) String() string { return whatNames[w] }
 
@@ -59,6 +63,33 @@ func (w What) OfAxis() bool { return w <= Command }
 
 // OfBlock reports whether a block may have a track of this quantity.
 func (w What) OfBlock() bool { return w >= Command }
+
+// Measured reports whether tracks of this quantity only tell what was measured.
+func (w What) Measured() bool { return w >= MeasuredPressure }
+
+// Dim returns the dimension of a quantity, of a kind of axis where it is of one.
+func (w What) Dim(k AxisKind) units.Dim {
+	rotary := k == Rotary
+	switch {
+	case w == Command:
+		return units.Ratio
+	case w == SetPressure || w == MeasuredPressure:
+		return units.Pressure
+	case w == SetFlow || w == MeasuredFlow:
+		return units.Flow
+	case w == Speed && rotary:
+		return units.AngularSpeed
+	case w == Speed:
+		return units.Velocity
+	case w == Position && rotary:
+		return units.Angle
+	case w == Position:
+		return units.Length
+	case rotary:
+		return units.Torque
+	}
+	return units.Force
+}
 
 // WhatNamed finds a quantity by the word used in files.
 func WhatNamed(word string) (What, bool) {
@@ -89,6 +120,9 @@ type Duty struct {
 	Hours   float64 // s a year in which the duty runs
 	Repeats bool    // the cycle repeats without pause while it runs
 	Step    float64 // s, spacing of time steps between the rows; 0 = rows only
+	// Standstill gives the speed [m/s or rad/s] up to which an axis counts as
+	// standing, by axis; StandstillShare of its largest speed where it gives none.
+	Standstill map[string]float64
 	// Sampled leaves out the instants at which an axis comes to rest or sets off:
 	// the energies are then those of a plain sum over samples, as calculations on
 	// recorded samples give them. Only meant for comparing with such calculations.

@@ -27,11 +27,12 @@ func newLayout(d *Duty, axes []Axis, inertia bool) *layout {
 	l := &layout{Duty: d, inertia: inertia}
 	for _, a := range axes {
 		v := d.speedColumn(a.Name)
-		rest := v
+		rest, limit := v, d.StandsBelow(a.Name, v.top())
 		if rest == nil {
 			rest = d.column(a.Name, Command)
+			limit = StandstillShare * rest.top()
 		}
-		l.speeds, l.rest, l.limit = append(l.speeds, v), append(l.rest, rest), append(l.limit, StandstillShare*rest.top())
+		l.speeds, l.rest, l.limit = append(l.speeds, v), append(l.rest, rest), append(l.limit, limit)
 	}
 	return l
 }

@@ -5,7 +5,7 @@ import (
 	"slices"
 )
 
-// StandstillShare is the share of an axis' largest speed (or command) below
+// StandstillShare is, unless a duty says otherwise, the share of an axis' largest speed (or command) below
 // which it counts as standing. Recordings never read exactly zero; 0.1 % of the
 // top speed is below what any axis is driven at on purpose (our choice, stated
 // in the report).
@@ -53,7 +53,7 @@ func (a *AxisSeries) CommandAt(k int) float64 {
 // Control names a track that a duty gives for a block.
 type Control struct {
 	Block string
-	What  What // Command, SetPressure or SetFlow
+	What  What // of a block, see What.OfBlock
 }
 
 // Series is a duty laid out in time steps: the rows of the duty, the steps
@@ -153,4 +153,13 @@ func (s *Series) Part(from, to int) *Series {
 		p.Commands[c] = cut(v)
 	}
 	return p
+}
+
+// StandsBelow returns the speed up to which an axis counts as standing, for the largest
+// speed top of the duty.
+func (d *Duty) StandsBelow(axis string, top float64) float64 {
+	if v, ok := d.Standstill[axis]; ok {
+		return v
+	}
+	return StandstillShare * top
 }
