@@ -30,6 +30,7 @@ var groups = []group{
 		"flow_control", "flow_control_3", "reducing", "sequence", "counterbalance"}},
 	{"lines, filters and check valves", []string{"line", "filter", "cooler", "flow_point", "check", "pilot_check", "shuttle", "shuttle_flow", "junction"}},
 	{"cylinder friction", []string{"cylinder", "double_rod", "plunger"}},
+	{"accumulators", []string{"accumulator"}},
 }
 
 const otherGroup = "other blocks"
