@@ -90,6 +90,7 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
 		c.Money = s.Tariff.YearCost(c.Year)
 		c.Findings = append(c.Findings, c.remarks()...)
+		c.Findings = append(c.Findings, s.extrapolations(c)...)
 		c.Findings = append(c.Findings, circuitCautions(c)...)
 	}
 	s.Comparisons = s.compare()
