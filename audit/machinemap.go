@@ -19,6 +19,16 @@ type MachineMap struct {
 	Chart  *machines.Map // the points themselves, where they stand in for the law
 	// Limits of the machine, rad/s and Pa; NaN when not given.
 	MinSpeed, MaxSpeed, Rating float64
+
+	around *machines.Hull
+}
+
+// hull is that of the measured points, found when it is first asked for.
+func (m *MachineMap) hull() *machines.Hull {
+	if m.around == nil {
+		m.around = machines.NewHull(m.Fit.Points)
+	}
+	return m.around
 }
 
 // MachineMap returns the map of a machine of a circuit that was solved; nil where the block is no such machine.
@@ -79,7 +89,7 @@ func (m *MachineMap) Measured(e, w, dp float64) bool {
 	if m.Motor {
 		dp = -dp
 	}
-	return m.Fit == nil || m.Fit.Inside(e, w, dp)
+	return m.Fit == nil || m.hull().Inside(e, w, dp)
 }
 
 // Extrapolated returns the share of the energy that passed the shaft at states outside the measured points.
@@ -90,7 +100,7 @@ func (m *MachineMap) Extrapolated() float64 {
 	out, all := 0.0, 0.0
 	for _, x := range m.States {
 		all += x.Energy
-		if !m.Fit.Inside(x.E, x.W, x.DP) {
+		if !m.hull().Inside(x.E, x.W, x.DP) {
 			out += x.Energy
 		}
 	}

@@ -118,6 +118,43 @@ func TestMeasuredPointsInTheFile(t *testing.T) {
 	}
 }
 
+// A duty within the measured points says nothing of extrapolation; one whose pressures lie below them warns, in either use
+// of the points; as a map of exact points the energies are those of the law.
+func TestMeasuredPointsAsMap(t *testing.T) {
+	solve := func(press, table string) (*audit.CircuitRun, string) {
+		f, found := parsePress(press, table)
+		if f == nil || circuit.AnyStops(found) {
+			t.Fatal(found)
+		}
+		s, err := audit.Solve(context.Background(), f, audit.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		said := ""
+		for _, n := range s.Circuits[0].Findings {
+			if n.Parameter == "points" {
+				said += string(n.Level) + ": " + n.Text + "\n"
+			}
+		}
+		return s.Circuits[0], said
+	}
+	table := pumpTable(pumpLaw, 0.035, 700, 1200, 1800, 2600)
+	asMap := strings.Replace(measuredPress, "points: pump.csv", "points: pump.csv, points_as: map", 1)
+	law, quiet := solve(measuredPress, table)
+	chart, _ := solve(asMap, table)
+	if quiet != "" {
+		t.Errorf("within the points it says %q", quiet)
+	}
+	a, b := law.Duties[0].Balance, chart.Duties[0].Balance
+	if b.Closure() > 1e-9 || math.Abs(a.SupplyIn.Total()-b.SupplyIn.Total()) > 1e-5*a.SupplyIn.Total() {
+		t.Errorf("as a map of exact points it draws %g J, by their law %g J; closure %g", b.SupplyIn.Total(), a.SupplyIn.Total(), b.Closure())
+	}
+	_, loud := solve(strings.Replace(asMap, "crack: 160 bar", "crack: 315 bar", 1), table)
+	if !strings.HasPrefix(loud, "warns: P1: ") || !strings.Contains(loud, "extrapolated") {
+		t.Errorf("above the points it says %q", loud)
+	}
+}
+
 func TestMeasuredPointsRefused(t *testing.T) {
 	table := pumpTable(pumpLaw, 0.035, 700, 1200, 1800, 2600)
 	for _, c := range []struct{ press, table, want string }{

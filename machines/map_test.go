@@ -89,7 +89,10 @@ func TestMapOfMeasuredPump(t *testing.T) {
 
 // Points of a grid contain what lies between its corners, and nothing beyond or in another quadrant.
 func TestInsideTheHull(t *testing.T) {
-	f := &Fit{Points: made(Displacement{D: 1e-5, Cs: 1e-9}, Fluid{Mu: 0.03, Rho: 860, Bulk: 1e9}, 0, 600, 2600)} // e 0.3 to 1, 50 to 300 bar
+	f := NewHull(made(Displacement{D: 1e-5, Cs: 1e-9}, Fluid{Mu: 0.03, Rho: 860, Bulk: 1e9}, 0, 600, 2600)) // e 0.3 to 1, 50 to 300 bar
+	if !f.Inside(1, 600*units.RPM, 3e7) || !f.Inside(1, 1500*units.RPM, 5e6) {
+		t.Error("a corner or an edge of the points is taken as not measured")
+	}
 	rnd := rand.New(rand.NewSource(3))
 	for range 2000 {
 		e, n, bar := 0.1+rnd.Float64(), 300+2700*rnd.Float64(), 20+330*rnd.Float64()
