@@ -3,6 +3,7 @@ package main
 import (
 	"bytes"
 	"encoding/json"
+	"fmt"
 	"os"
 	"path/filepath"
 	"regexp"
@@ -12,6 +13,8 @@ import (
 	"barlitre/audit"
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/machines"
+	"barlitre/machines/units"
 )
 
 const press, winch = "../samples/baling-press.yaml", "../samples/quayside-winch.yaml"
@@ -44,11 +47,27 @@ func edited(t *testing.T, path, old, new string) string {
 	return write(t, strings.Replace(string(data), old, new, 1))
 }
 
+// pumpTable is an invented table of points of a pump of 45 cm³/rev.
+func pumpTable() string {
+	law := machines.NewDisplacement(45 * units.CubicCentimetrePerRev)
+	text := "n_rpm,V_cm3,dp_bar,q_Lmin,T_Nm\n"
+	for _, n := range []float64{600, 1200, 1800} {
+		for _, e := range []float64{0.3, 1} {
+			for _, bar := range []float64{50, 150, 250} {
+				w, dp := n*units.RPM, bar*units.Bar
+				text += fmt.Sprintf("%g,%g,%g,%.9g,%.9g\n", n, 45*e, bar, law.Flow(e, w, dp, 0.035, 870, 1.4e9)/units.LitrePerMinute, law.Torque(e, w, dp, 0.035, 870))
+			}
+		}
+	}
+	return text
+}
+
 func TestExitCodes(t *testing.T) {
 	window := openWindow // a build may have one; here it must stay shut
 	openWindow = nil
 	defer func() { openWindow = window }()
 	missing := filepath.Join(t.TempDir(), "none.yaml")
+	points := write(t, pumpTable())
 	noRest := edited(t, press, "pump_at_rest:", "note2:")
 	for _, c := range []struct {
 		name string
@@ -71,6 +90,12 @@ func TestExitCodes(t *testing.T) {
 		{"audit, set in a wrong unit", []string{"audit", press, "-set", "P1.displacement=30 bar"}, exitUnreadable, "displacement"},
 		{"audit, folder that cannot be", []string{"audit", press, "-pdf", filepath.Join(press, "x.pdf")}, exitUnreadable, "baling-press.yaml"},
 		{"audit, units", []string{"audit", press, "-units", "imperial"}, exitUnreadable, "metric, us or si"},
+		{"fit", []string{"fit", points, "-viscosity", "35 mPa s", "-png", t.TempDir()}, exitOK, "rms 0.00 efficiency points"},
+		{"fit, displacement too small", []string{"fit", "-displacement", "20 cm3/rev", points}, exitUnreadable, "above 110 %"},
+		{"fit, wrong unit", []string{"fit", points, "-viscosity", "35 bar"}, exitUnreadable, "viscosity"},
+		{"fit of an audit file", []string{"fit", press}, exitUnreadable, "baling-press.yaml"},
+		{"fit of a missing file", []string{"fit", missing}, exitUnreadable, "none.yaml"},
+		{"fit without a file", []string{"fit"}, exitUnreadable, "name a CSV file"},
 		{"blocks", []string{"blocks"}, exitOK, "counterbalance"},
 		{"one kind", []string{"blocks", "relief"}, exitOK, "10 bar per 100 L/min"},
 		{"no such kind", []string{"blocks", "turbine"}, exitUnreadable, "turbine"},

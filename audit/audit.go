@@ -94,6 +94,7 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		c.Money = s.Tariff.YearCost(c.Year)
 		c.Findings = append(c.Findings, c.remarks()...)
 		c.Findings = append(c.Findings, s.fuelRemarks(c)...)
+		c.Findings = append(c.Findings, s.extrapolations(c)...)
 		c.Findings = append(c.Findings, circuitCautions(c)...)
 	}
 	s.Comparisons = s.compare()

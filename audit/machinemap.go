@@ -16,8 +16,19 @@ type MachineMap struct {
 	States []Operating   // of the duties, by their hours a year, or of a measurement
 	Motor  bool          // it mostly gives power at its shaft
 	Fit    *machines.Fit // of measured points, or nil
+	Chart  *machines.Map // the points themselves, where they stand in for the law
 	// Limits of the machine, rad/s and Pa; NaN when not given.
 	MinSpeed, MaxSpeed, Rating float64
+
+	around *machines.Hull
+}
+
+// hull is that of the measured points, found when it is first asked for.
+func (m *MachineMap) hull() *machines.Hull {
+	if m.around == nil {
+		m.around = machines.NewHull(m.Fit.Points)
+	}
+	return m.around
 }
 
 // MachineMap returns the map of a machine of a circuit that was solved; nil where the block is no such machine.
@@ -31,6 +42,9 @@ func (s *Solution) MachineMap(c *CircuitRun, block string) *MachineMap {
 		return nil
 	}
 	m := &MachineMap{Name: b.ID, Law: law, Fluid: fluidOf(s.Conditions), Fit: b.Fit, MinSpeed: limitOf(b, "min_speed"), MaxSpeed: limitOf(b, "max_speed"), Rating: limitOf(b, "rating")}
+	if b.Fit != nil && circuit.KindNamed(b.Kind).WordOf(b, "points_as") == "map" {
+		m.Chart = machines.NewMap(b.Fit)
+	}
 	drives := 0.0
 	for _, d := range c.Duties {
 		times := 1.0
@@ -64,7 +78,36 @@ func (m *MachineMap) Efficiency(e, w, dp float64) float64 {
 	if m.Motor {
 		dp = -dp
 	}
+	if m.Chart != nil {
+		return m.Chart.EfficiencyIn(m.Law, e, w, dp, m.Fluid)
+	}
 	return m.Law.EfficiencyIn(e, w, dp, m.Fluid)
+}
+
+// Measured reports whether a state, all > 0, lies among measured points; without any the law is all that is known, and true.
+func (m *MachineMap) Measured(e, w, dp float64) bool {
+	if m.Motor {
+		dp = -dp
+	}
+	return m.Fit == nil || m.hull().Inside(e, w, dp)
+}
+
+// Extrapolated returns the share of the energy that passed the shaft at states outside the measured points.
+func (m *MachineMap) Extrapolated() float64 {
+	if m.Fit == nil {
+		return 0
+	}
+	out, all := 0.0, 0.0
+	for _, x := range m.States {
+		all += x.Energy
+		if !m.hull().Inside(x.E, x.W, x.DP) {
+			out += x.Energy
+		}
+	}
+	if all == 0 {
+		return 0
+	}
+	return out / all
 }
 
 func fluidOf(c circuit.Conditions) machines.Fluid {

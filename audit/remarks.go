@@ -68,3 +68,31 @@ const storedShare = 0.005
 func seconds(t float64) string {
 	return units.Format(t, units.Preferred(units.Time, units.Metric), 4)
 }
+
+// Shares of the energy at states outside measured points that are worth a note, and a warning (our choice).
+const (
+	notedOutside  = 0.01
+	warnedOutside = 0.20
+)
+
+// extrapolations says how much of the energy passes machines at states that nobody measured.
+func (s *Solution) extrapolations(c *CircuitRun) []circuit.Finding {
+	var out []circuit.Finding
+	for i := range c.Circuit.Blocks {
+		b := &c.Circuit.Blocks[i]
+		if b.Fit == nil {
+			continue
+		}
+		share := s.MachineMap(c, b.ID).Extrapolated()
+		if share < notedOutside {
+			continue
+		}
+		level := circuit.Note
+		if share > warnedOutside {
+			level = circuit.Warns
+		}
+		out = append(out, circuit.Finding{Level: level, Circuit: c.Circuit.Name, Block: b.ID, Parameter: "points", Line: b.Words["points"].Line,
+			Text: fmt.Sprintf("%s: %s of the energy passes it at states outside its measured points, where the fitted law is extrapolated; measure there, or trust its losses less", b.ID, units.Format(share, units.Percent, 2))})
+	}
+	return out
+}

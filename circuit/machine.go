@@ -40,6 +40,7 @@ type machine struct {
 	wPer, tPer float64 // rad/s and N·m of one scaled unit
 	oil        Conditions
 	scale      scales
+	chart      *machines.Map // of measured points that stand in for the law, or nil
 }
 
 // coefficientKeys are the parameters of the loss law.
@@ -77,6 +78,9 @@ func (k *compiler) machine(b *Block, P, S string, shaft int, e slot) machine {
 	}
 	if has("hydrodynamic") {
 		m.inert = k.channel(Loss, b, "hydrodynamic torque")
+	}
+	if b.Fit != nil && KindNamed(b.Kind).WordOf(b, "points_as") == "map" {
+		m.chart = machines.NewMap(b.Fit)
 	}
 	s.sizes = append(s.sizes, m.disp)
 	return m
@@ -141,142 +145,4 @@ func (m *machine) worn(b *binding) {
 		w.drain, w.pressure, w.theta = b.p[m.drainQ], b.p[m.drainP], b.get(m.drainT, b.cond.Temperature)
 	}
 	m.law = w.of(m.law, &b.cond)
-}
-
-func (m *machine) evalMachine(e *eval) {
-	set, w := e.val(m.e), e.val(m.speed)
-	q := set * w * m.d // ideal flow, S to P
-	e.add(m.S, q)
-	e.d(m.S, m.e, w*m.d)
-	e.d(m.S, m.speed, set*m.d)
-	e.add(m.P, -q)
-	e.d(m.P, m.e, -w*m.d)
-	e.d(m.P, m.speed, -set*m.d)
-	if m.across > 0 {
-		e.conduct(m.P, m.S, m.across)
-	}
-	if m.drain > 0 {
-		e.conduct(m.P, m.D, m.drain)
-		e.conduct(m.S, m.D, m.drain)
-	}
-	if m.law.Cst > 0 {
-		m.evalTurbulent(e, m.P, m.S, 1-m.kc)
-		m.evalTurbulent(e, m.P, m.D, m.kc)
-		m.evalTurbulent(e, m.S, m.D, m.kc)
-	}
-	if m.law.K > 0 || m.law.Kd > 0 {
-		m.evalCompression(e)
-	}
-	if m.free { // the torque row of the shaft sums them
-		m.addTorque(e, m.row, 1, m.torque(e))
-	}
-}
-
-// turbulent is a share of the turbulent slip from a to b and its slope, scaled.
-func (m *machine) turbulent(dp, share float64) (q, slope float64) {
-	q, slope = m.law.TurbulentSlip(dp*m.scale.p, m.oil.Density)
-	return share * q / m.scale.q, share * slope * m.scale.p / m.scale.q
-}
-
-func (m *machine) evalTurbulent(e *eval, a, b slot, share float64) {
-	if share == 0 {
-		return
-	}
-	q, k := m.turbulent(e.val(a)-e.val(b), share)
-	e.add(a, q)
-	e.d(a, a, k)
-	e.d(a, b, -k)
-	e.add(b, -q)
-	e.d(b, a, -k)
-	e.d(b, b, k)
-}
-
-// compression is the flow lost to compression from P to S and its slopes by drop, setting and speed, scaled.
-func (m *machine) compression(set, w, dp float64) (q, byDP, byE, byW float64) {
-	q, byDP, byE, byW = m.law.CompressionFlow(set, w*m.wPer, dp*m.scale.p, m.oil.bulk(), m.oil.Air)
-	return q / m.scale.q, byDP * m.scale.p / m.scale.q, byE / m.scale.q, byW * m.wPer / m.scale.q
-}
-
-func (m *machine) evalCompression(e *eval) {
-	q, k, byE, byW := m.compression(e.val(m.e), e.val(m.speed), e.val(m.P)-e.val(m.S))
-	for _, side := range [...]struct {
-		row  slot
-		sign float64
-	}{{m.P, 1}, {m.S, -1}} {
-		e.add(side.row, side.sign*q)
-		e.d(side.row, m.P, side.sign*k)
-		e.d(side.row, m.S, -side.sign*k)
-		e.d(side.row, m.e, side.sign*byE)
-		e.d(side.row, m.speed, side.sign*byW)
-	}
-}
-
-// torque is what a machine needs from its shaft, scaled, and its slopes by setting,
-// speed, pressure at P (at S the negative) and friction sign.
-type torque struct{ need, e, w, p, sigma float64 }
-
-func (m *machine) torque(e *eval) torque {
-	set, w, dp := e.val(m.e), e.val(m.speed), e.val(m.P)-e.val(m.S)
-	sg := sign(w)
-	if m.free {
-		sg = e.val(m.sigma)
-	}
-	dry, slope := m.cf1*math.Abs(dp)+m.tc1, m.cf1*sign(dp)
-	t := torque{set*m.d*dp + sg*dry + m.visc*w, m.d * dp, m.visc, set*m.d + sg*slope, dry}
-	if m.law.Ch > 0 {
-		T, byE, byW := m.law.InertialTorque(set, w*m.wPer, m.oil.Density)
-		t.need += T / m.tPer
-		t.e += byE / m.tPer
-		t.w += byW * m.wPer / m.tPer
-	}
-	return t
-}
-
-// addTorque adds k times a torque of the machine to a row.
-func (m *machine) addTorque(e *eval, row slot, k float64, t torque) {
-	e.add(row, k*t.need)
-	e.d(row, m.e, k*t.e)
-	e.d(row, m.speed, k*t.w)
-	e.d(row, m.P, k*t.p)
-	e.d(row, m.S, -k*t.p)
-	if m.free {
-		e.d(row, m.sigma, k*t.sigma)
-	}
-}
-
-// bookMachine books slip and friction and returns the torque needed at the shaft.
-func (m *machine) bookMachine(k *booking) {
-	set, ws := k.val(m.e), k.val(m.speed)
-	w := ws * m.wPer
-	pP, pS := k.val(m.P), k.val(m.S)
-	q := set * ws * m.d
-	flow := func(a, b slot, share, laminar float64) float64 { // along a path of slip, booked
-		dp := k.val(a) - k.val(b)
-		t, _ := m.turbulent(dp, share)
-		k.lose(m.slip, k.watts(laminar*dp*dp))
-		k.lose(m.turb, k.watts(t*dp))
-		return laminar*dp + t
-	}
-	a, dP, dS := flow(m.P, m.S, 1-m.kc, m.across), flow(m.P, m.D, m.kc, m.drain), flow(m.S, m.D, m.kc, m.drain)
-	c, _, _, _ := m.compression(set, ws, pP-pS)
-	k.lose(m.comp, k.watts(c*(pP-pS)))
-	k.put(m.qP, k.m3s(-q+a+c+dP))
-	k.put(m.qS, k.m3s(q-a-c+dS))
-	k.put(m.qD, k.m3s(-dP-dS))
-	dp := (pP - pS) * k.scales.p
-	dir := sign(w)
-	if m.free {
-		dir = k.val(m.sigma)
-	}
-	friction := (m.law.Cf*m.law.D*math.Abs(dp)+m.law.Tc)*dir + m.law.Cv*m.law.D*k.cond.Viscosity*w
-	inertial, _, _ := m.law.InertialTorque(set, w, k.cond.Density)
-	T := set*m.law.D*dp + friction + inertial
-	k.lose(m.rub, friction*w)
-	k.lose(m.inert, inertial*w)
-	k.put(m.sigW, w)
-	k.put(m.sigT, T)
-	k.put(m.sigP, T*w)
-	k.put(m.sigE, set)
-	k.shaft[m.shaft].torque += T
-	k.shaft[m.shaft].speed = w
 }

@@ -151,6 +151,62 @@ func (g *gain) Sample(s *Sample) error {
 	return nil
 }
 
+// A pump whose measured losses no law describes goes into the balance as a map: the winch still closes at every step, no
+// loss is negative, and flow and torque are those of the map, in all quadrants.
+func TestMapInTheBalance(t *testing.T) {
+	law := machines.Displacement{D: 71e-6 / (2 * math.Pi), Cs: 8e-9, Kd: 1.5, Cf: 0.02, Cv: 5e4, Ch: 20, Tc: 2}
+	fluid := machines.Fluid{Mu: 0.04, Rho: 870, Bulk: 1.4e9}
+	var points []machines.Point
+	for _, n := range []float64{700, 1200, 1480, 2200} {
+		for _, e := range []float64{0.2, 0.6, 1} {
+			for bar := 20.0; bar < 300; bar += 40 {
+				w, dp := n*units.RPM, bar*1e5
+				more := 1 + 0.4*math.Sin(bar/40)
+				points = append(points, machines.Point{W: w, E: e, DP: dp, Q: e*law.D*w - more*law.Slip(e, w, dp, fluid.Mu, fluid.Rho, fluid.Bulk),
+					T: e*law.D*dp + more*law.FrictionTorque(e, w, dp, fluid.Mu, fluid.Rho)})
+			}
+		}
+	}
+	fit, err := machines.FitPoints(points, machines.FitOptions{D: law.D, Fluid: fluid})
+	if err != nil {
+		t.Fatal(err)
+	}
+	c := build(t, c4)
+	pump := c.Block("P1")
+	pump.Fit, pump.Words["points"], pump.Words["points_as"] = fit, Word{Text: "pump.csv"}, Word{Text: "map"}
+	k, found := Compile(c, []duty.Axis{{Name: "drum", Kind: duty.Rotary}}, drumDuty)
+	if k == nil {
+		t.Fatal(found)
+	}
+	cols := &columns{c: k, sig: map[string][]float64{}}
+	steps, made := &stepClosure{c: k}, &gain{c: k}
+	_, cert, err := Run(context.Background(), k, k.Defaults(), k.Series(drumDuty), trialOil, State{}, Receivers{cols, steps, made})
+	if err != nil || cert.Unbalanced > 0 || steps.worst > 1e-9 || made.worst < -1e-12 {
+		t.Fatalf("%v, %d unbalanced, closure %g, %s gains %g", err, cert.Unbalanced, steps.worst, made.where, -made.worst)
+	}
+	if cert.Fallbacks*20 > cert.Steps {
+		t.Errorf("%d of %d steps needed more than Newton's method", cert.Fallbacks, cert.Steps)
+	}
+	chart := machines.NewMap(fit)
+	differs := 0.0
+	for i := range cols.t {
+		at := func(s string) float64 { return cols.sig["P1."+s][i] }
+		e, w, dp := at("e"), at("w"), at("P.p")-at("S.p")
+		slip := chart.Slip(e, w, dp).V * fit.Law.Slip(e, w, dp, fluid.Mu, fluid.Rho, fluid.Bulk)
+		if q := e*law.D*w - slip; math.Abs(q+at("P.q")) > 1e-9*law.D*157 {
+			t.Fatalf("at %g s: flow %g, by the map %g", cols.t[i], -at("P.q"), q)
+		}
+		T := e*law.D*dp + chart.Friction(e, w, dp).V*fit.Law.FrictionTorque(e, w, dp, fluid.Mu, fluid.Rho)*sign(w)
+		if math.Abs(T-at("T")) > 1e-7*math.Abs(T)+1e-6 {
+			t.Fatalf("at %g s: torque %g, by the map %g", cols.t[i], at("T"), T)
+		}
+		differs = math.Max(differs, math.Abs(chart.Slip(e, w, dp).V-1))
+	}
+	if differs < 0.1 {
+		t.Errorf("the map differs from its law by %g at most", differs)
+	}
+}
+
 // of returns a parameter of a block as it goes into the balance.
 func of(t *testing.T, row, key string) Value {
 	t.Helper()

@@ -25,7 +25,8 @@
 //	T, P          torque, N·m, power, W
 //	Cs, Cst       laminar and turbulent slip coefficients, –
 //	Cf, Cv, Ch    pressure, viscous and w² friction coefficients, –
-//	Tc, K         constant torque, N·m, compression flow factor, –
+//	Tc            constant torque, N·m
+//	K, Kd         compression of the swept and of the dead volume, –
 //	μ, ν, ρ, B    dynamic viscosity, Pa·s, kinematic, m²/s, density, kg/m³, bulk modulus, Pa
 //	θ             temperature, K
 //	f, ε, Re, ζ   friction factor (Darcy), roughness, m, Reynolds number, loss coefficient of fittings
@@ -34,8 +35,12 @@
 //
 // Wilson (1950) for slip and friction, Schloesser for the turbulent and inertial terms,
 // ISO 4409 for efficiencies, IEC 60034-30-1 for motor classes, ASTM D341, ASTM D2270, ISO 3448
-// for oil, Darcy-Weisbach, Hagen-Poiseuille and Colebrook for lines. Values without
+// for oil, Rabie (2009) for its compression, Darcy-Weisbach, Hagen-Poiseuille and Colebrook for lines. Values without
 // a published source say "assumed, common practice" or "from memory" beside them.
+//
+// # Measured points
+//
+// ReadPoints makes points of a table, FitPoints a law of points, NewMap a map of both; NewHull tells where they lie.
 //
 //	pump := machines.NewDisplacement(45 * units.CubicCentimetrePerRev)
 //	pump.Flow(1, 1480*units.RPM, 160*units.Bar, 0.040, 870, 1.4e9) // 64.02 L/min

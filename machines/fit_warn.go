@@ -18,7 +18,7 @@ func (f *Fit) warn(apart [2][]int) {
 		}
 	}
 	if n := len(Speeds(f.Points)); n < 3 {
-		f.Warnings = append(f.Warnings, fmt.Sprintf("the points lie at %d speeds only; at other speeds the law is a guess", n))
+		f.Warnings = append(f.Warnings, fmt.Sprintf("the points lie at %s only; at other speeds the law is a guess", [...]string{"no speed", "one speed", "2 speeds"}[n]))
 	}
 	if f.RMS > poorFit {
 		f.Warnings = append(f.Warnings, fmt.Sprintf("the law leaves %s efficiency points rms: look at the residuals, and for points that do not belong", units.Number(100*f.RMS, 2)))

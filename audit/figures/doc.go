@@ -16,6 +16,13 @@
 // finds no room at all is left out. Numbers that are NaN or infinite are drawn
 // as missing. Nothing here panics.
 //
+// The efficiency of a pump or motor with the states of its duties, and what a fit leaves of its measured points:
+//
+//	m := solution.MachineMap(run, "P1") // nil where the block is no such machine
+//	figures.MapOverSpeed(m, 1, units.Metric).Draw(p, 700, 500, figures.Light)
+//	figures.MapOverSetting(m, 0, units.Metric).Draw(p, 700, 500, figures.Light)
+//	figures.FitResiduals(m, units.Metric).Draw(p, 700, 400, figures.Light)
+//
 // A Sheet is a circuit drawn with its results. It is laid out in modules of the symbol
 // grid, once for a drawing, and then drawn at any instant and scale:
 //

@@ -21,6 +21,7 @@ type EfficiencyMap struct {
 	XUnit, YUnit     string                     // "rpm"
 	FromX, ToX, ToY  float64                    // in these units; Y begins at 0
 	At               func(x, y float64) float64 // efficiency 0…1, NaN where there is none
+	Inside           func(x, y float64) bool    // whether it was measured there; nil where nothing was
 	Points           []MapPoint
 	PointsAre        string    // for the legend: "duty, area by energy"
 	OffAre           string    // "at another setting"
@@ -142,7 +143,11 @@ func (d *mapLayout) cell(i, j int) (color.NRGBA, bool) {
 		return color.NRGBA{}, false
 	}
 	share := math.Floor(max(0, v-d.low)/2) * 2 / max(1, d.top-d.low)
-	return mixLab(d.pal.Card, d.pal.Gain, 0.05+0.5*share*share), true
+	depth := 0.05 + 0.5*share*share
+	if d.Inside != nil && !d.Inside(d.FromX+(d.ToX-d.FromX)*(float64(i)+0.5)/mapColumns, d.ToY*(float64(j)+0.5)/mapRows) {
+		depth *= 0.35
+	}
+	return mixLab(d.pal.Card, d.pal.Gain, depth), true
 }
 
 // contour draws the line of one efficiency, cell by cell, and writes it once.

@@ -116,6 +116,23 @@ func TestStatesOfTheDuty(t *testing.T) {
 	}
 }
 
+// Where nothing was measured the tint is paler.
+func TestExtrapolationIsPale(t *testing.T) {
+	f := EfficiencyMap{X: "x", Y: "y", ToX: 100, ToY: 10, At: func(x, y float64) float64 { return 0.9 }, Inside: func(x, y float64) bool { return x < 50 }}
+	rec := pen.NewRecorder()
+	area := f.Draw(rec, 600, 400, Light)
+	contrastOf := map[bool]float64{}
+	for _, s := range rec.Shapes() {
+		lo, hi := s.Bounds()
+		if len(s.Points) == 4 && lo.X >= area.X && hi.X <= area.X+area.W+1e-6 && hi.X-lo.X < 0.9*area.W {
+			contrastOf[area.At((lo.X+hi.X)/2) < 50] = contrast(s.Fill, Light.Card)
+		}
+	}
+	if !(contrastOf[true] > contrastOf[false]) || len(contrastOf) != 2 {
+		t.Errorf("contrast to the card inside %g, outside %g", contrastOf[true], contrastOf[false])
+	}
+}
+
 // BARLITRE_PICTURES names a folder for the pictures.
 func TestMachinePictures(t *testing.T) {
 	dir := os.Getenv("BARLITRE_PICTURES")
@@ -142,5 +159,12 @@ func TestMachinePictures(t *testing.T) {
 			}
 			f.Close()
 		}
+	}
+}
+
+func BenchmarkMapOfPoints(b *testing.B) {
+	f := MapOverSpeed(demoFit(b), 0, units.Metric)
+	for range b.N {
+		f.Draw(pen.NewRecorder(), 700, 500, Light)
 	}
 }

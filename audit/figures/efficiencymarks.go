@@ -92,6 +92,9 @@ func (d *mapLayout) legend() {
 	if slices.ContainsFunc(slices.Concat(d.LimitsX, d.LimitsY), finite) {
 		signs = append(signs, "dashes: its limits")
 	}
+	if d.Inside != nil {
+		signs = append(signs, "pale: extrapolated")
+	}
 	line(strings.Join(signs, "; "))
 }
 

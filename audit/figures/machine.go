@@ -26,6 +26,9 @@ func MapOverSpeed(m *audit.MachineMap, setting float64, s units.System) Efficien
 	f.Subtitle = "at " + units.Format(setting, units.Percent, 3) + " setting, " + oilText(m, s)
 	f.X, f.XUnit, f.ToX = "speed", speed.Symbol, speed.FromSI(1.05*w)
 	f.At = func(x, y float64) float64 { return m.Efficiency(setting, speed.ToSI(x), pressure.ToSI(y)) }
+	if m.Fit != nil {
+		f.Inside = func(x, y float64) bool { return m.Measured(setting, speed.ToSI(x), pressure.ToSI(y)) }
+	}
 	f.LimitsX = []float64{speed.FromSI(m.MaxSpeed), speed.FromSI(m.MinSpeed)}
 	f.OffAre = "at another setting"
 	for _, x := range m.States {
@@ -48,6 +51,9 @@ func MapOverSetting(m *audit.MachineMap, w float64, s units.System) EfficiencyMa
 	f.Subtitle = "at " + units.Format(w, speed, 4) + ", " + oilText(m, s)
 	f.X, f.XUnit, f.ToX = "setting", "%", 105
 	f.At = func(x, y float64) float64 { return m.Efficiency(x/100, w, pressure.ToSI(y)) }
+	if m.Fit != nil {
+		f.Inside = func(x, y float64) bool { return m.Measured(x/100, w, pressure.ToSI(y)) }
+	}
 	f.OffAre = "at another speed"
 	for _, x := range m.States {
 		off := math.Abs(math.Abs(x.W)-w) > sameSpeed*w
