@@ -99,7 +99,7 @@ func (m *motorWatch) gates(w *Watch) []Gate {
 		limit := m.rated * m.cooled(0)
 		v := math.Sqrt(m.hold / m.held)
 		out = append(out, gateOf(m.b, "cooling", "holding torque at standstill", v, limit, units.Torque, m.tMax,
-			fmt.Sprintf("for %s a cycle, mean square; copper heats at standstill and a fan on the shaft stands (half the rated torque, common practice)", clock(m.held))).
+			fmt.Sprintf("mean square over %s of standstill, where the copper heats; %s", clock(m.held), map[bool]string{true: "the fan on its shaft stands: half the rated torque (common practice)", false: "it has a fan of its own"}[m.selfCooled])).
 			or(Warns, fmt.Sprintf("it holds %s at standstill for %s a cycle, more than the %s it stands there for long; hold the load by a valve or brake, or cool it by a fan of its own", tor(v), clock(m.held), tor(limit))))
 	}
 	if m.current >= 0 {
