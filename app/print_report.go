@@ -89,6 +89,22 @@ func printCircuit(w io.Writer, c audit.CircuitPage) {
 		auditTable(w, d.Losses)
 		auditTable(w, d.Work)
 		auditTable(w, d.Measured)
+		printGates(w, d.Gates)
+	}
+}
+
+// printGates writes a paragraph a gate: the reasons are too long for columns.
+func printGates(w io.Writer, t audit.Table) {
+	if len(t.Rows) == 0 {
+		return
+	}
+	fmt.Fprintf(w, "\n  %s\n", t.Title)
+	for _, r := range t.Rows {
+		text := fmt.Sprintf("%s: %s asked, limit %s", r.Cells[0], r.Cells[1], r.Cells[2])
+		if r.Cells[3] != "" {
+			text += ", " + r.Cells[3]
+		}
+		wrap(w, text+" ("+r.Cells[4]+")")
 	}
 }
 

@@ -158,10 +158,11 @@ func (s *Solution) method() []Law {
 		{"integration", trapezoid, "trapezoid rule; a step has two values at one time"},
 		{"closure", "|in − returned − work − stored − losses| / (in + |work from driving loads| + |stored|)", "check of the balance"},
 		{"year", yearFormula, "arithmetic"},
-		{"15-minute mean", "max over t of E(t, t + 15 min) / 15 min, of power drawn", "exact for powers linear between time steps; length common practice"},
+		{"15-minute mean", "max over t of E(t, t + 15 min) / 15 min, of power drawn from the mains", "exact for powers linear between time steps; length common practice"},
 		{"heat", "P = Σ losses with sink oil / time", "all hydraulic losses and friction of pumps, motors and cylinders warm the oil"},
 		{"cooler", "K = P / (T_oil − T_air)", "difference of entering temperatures, common practice of cooler makers"},
-		{"money", "K = E_drawn · price; n = cost / saving", "arithmetic"},
+		{"money", "K = E_mains · price + E_fuel · price of fuel; n = cost / saving", "arithmetic"},
+		{"starts", "E = (1 + ks)·J·(ω² − ω0²)/2 a start, at the instant of the start", "see electric motor; of an engine the fuel of some idling"},
 	}
 	for _, k := range circuit.Catalog() {
 		if !s.uses(k.Name) {

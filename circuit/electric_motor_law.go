@@ -65,10 +65,11 @@ func (k *compiler) motorElectric(b *Block, converter bool) motorElectric {
 
 func (m *motorElectric) bind(b *binding) { m.voltage, m.powFactor = b.p[m.U], b.p[m.cos] }
 
-// book writes current and power factor at torque T and power P at the terminals.
-func (m *motorElectric) book(k *booking, l *motorLaw, T, P float64, off bool) {
+// book writes current and power factor at torque T, speed w and power P at the terminals. A motor that neither
+// turns nor holds is without current.
+func (m *motorElectric) book(k *booking, l *motorLaw, T, w, P float64, off bool) {
 	switch {
-	case off:
+	case off, w == 0 && math.Abs(T) < 1e-9*l.induction.RatedPower/l.induction.RatedSpeed:
 		k.put(m.sigI, 0)
 		k.put(m.sigPF, 0)
 	case l.wound:

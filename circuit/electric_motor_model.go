@@ -223,7 +223,7 @@ func (m *electricModel) bookShaft(k *booking) {
 	} else {
 		k.pow[m.supply] += P + loss
 	}
-	m.electric.book(k, &m.law, T, P+loss, m.off)
+	m.electric.book(k, &m.law, T, w, P+loss, m.off)
 	if m.ctl == heldConstant {
 		m.start.book(k, m.el, m.supply)
 	}

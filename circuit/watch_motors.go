@@ -80,8 +80,8 @@ func (m *motorWatch) take(s *Sample, dt float64) {
 }
 
 func (m *motorWatch) gates(w *Watch) []Gate {
-	if m.rated <= 0 || w.span <= 0 {
-		return nil
+	if m.rated <= 0 || w.span <= 0 || m.peak < 1e-6*m.rated {
+		return nil // nothing is asked of it
 	}
 	tor := func(x float64) string { return show(x, units.Torque) }
 	rms, hot := math.Sqrt(m.square/w.span), math.Sqrt(m.heated/w.span)
@@ -95,11 +95,11 @@ func (m *motorWatch) gates(w *Watch) []Gate {
 	}
 	out := []Gate{gateOf(m.b, "rated_power", "mean square torque", hot, m.rated, units.Torque, 0, why).or(Warns, said)}
 	out = append(out, m.peakGate())
-	if m.held > 0 && m.most > 0 {
+	if m.held > 0 && m.most > 1e-3*m.rated {
 		limit := m.rated * m.cooled(0)
 		v := math.Sqrt(m.hold / m.held)
 		out = append(out, gateOf(m.b, "cooling", "holding torque at standstill", v, limit, units.Torque, m.tMax,
-			fmt.Sprintf("for %s a cycle, mean square; copper heats at standstill and a fan on the shaft stands (half the rated torque, common practice)", clock(m.held))).
+			fmt.Sprintf("mean square over %s of standstill, where the copper heats; %s", clock(m.held), map[bool]string{true: "the fan on its shaft stands: half the rated torque (common practice)", false: "it has a fan of its own"}[m.selfCooled])).
 			or(Warns, fmt.Sprintf("it holds %s at standstill for %s a cycle, more than the %s it stands there for long; hold the load by a valve or brake, or cool it by a fan of its own", tor(v), clock(m.held), tor(limit))))
 	}
 	if m.current >= 0 {

@@ -47,6 +47,8 @@ var starters = []Starter{
 		"The press waits until the clamp has its pressure. While the press moves with little load the pump still stands at the sequence setting, and the valve burns the rest."},
 	{"reducing-clamp.yaml", "Reducing valve for a clamp",
 		"A clamp that may see only half the pressure hangs on the pump of the press. A branch that is warm behind the reducing valve while nothing moves leaks, all day, at full pump pressure."},
+	{"float-driven-rig.yaml", "Float-driven rig",
+		"A float moves a cylinder as the swell does; check valves make one direction of it for a motor and its generator. Motion and torque are given, the force on the float is found. Suction valves that open late, and a converter that draws in the calm, eat what it earns."},
 }
 
 // Starters lists the starters, from the plainest supply to special functions; a

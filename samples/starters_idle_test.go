@@ -13,11 +13,15 @@ import (
 func TestStarterIdlePower(t *testing.T) {
 	eachStarter(t, func(t *testing.T, st Starter, s *audit.Solution) {
 		h := &byHand{t: t, c: s.Circuits[0].Circuit, mu: s.Conditions.Viscosity}
-		shaft := idleShaft[st.Name]
-		if shaft == nil {
+		var want float64
+		switch shaft, electric := idleShaft[st.Name], idleElectric[st.Name]; {
+		case electric != nil:
+			want = electric(h)
+		case shaft != nil:
+			want = h.electric(shaft(h))
+		default:
 			t.Fatal("nobody worked it out")
 		}
-		want := h.electric(shaft(h))
 		b := s.Circuits[0].Duties[1].Balance
 		if got := b.SupplyIn.Total() / b.Cycle; math.Abs(got-want) > 1e-3*want {
 			t.Errorf("waiting %.1f W, by hand %.1f W", got, want)
@@ -109,6 +113,11 @@ func margin(h *byHand) float64 { return h.holding("P1", h.v("P1", "margin")) }
 func vented(h *byHand) float64 { return h.fixed("P1", h.relief("RV1", "vented")) }
 
 func tandem(h *byHand) float64 { return h.fixed("P1", h.tandem) }
+
+// idleElectric holds the electric power at rest where the motor stands [W].
+var idleElectric = map[string]func(h *byHand) float64{
+	"float-driven-rig.yaml": func(h *byHand) float64 { return h.v("U1", "rated_power") * h.v("U1", "no_load") }, // nothing turns
+}
 
 // idleShaft holds the shaft power at rest [W].
 var idleShaft = map[string]func(h *byHand) float64{

@@ -25,7 +25,8 @@ type inputs struct {
 
 	price, low, high, note *widgets.Field
 	band                   fyne.CanvasObject
-	ofPrice, ofCO2         fyne.CanvasObject // what there is to say of a value, once it is given
+	ofPrice, ofCO2, ofFuel fyne.CanvasObject // what there is to say of a value, once it is given
+	fuelPrice, fuelCO2     *widgets.Field
 	origin                 *widgets.Select
 	credit                 *widgets.Check
 	co2, year              *widgets.Field
@@ -56,14 +57,17 @@ func newInputs(ctx station.Context) *inputs {
 	in.origin = in.choice("payback.price.origin", "Change the origin of the price", "energy.price.origin", origins)
 	in.credit = widgets.Name(widgets.NewCheck("returned energy is paid for", in.setCredit), "payback.credit")
 	in.co2 = in.field("payback.co2", in.putCO2)
+	in.fuelPrice = in.field("payback.fuel_price", in.put("Change the price of fuel", "energy.fuel_price"))
+	in.fuelCO2 = in.field("payback.fuel_co2", in.put("Change the CO2 of fuel", "energy.fuel_co2"))
 	in.year = in.field("payback.co2.year", in.put("Change the year of the CO2 factor", "energy.co2_year"))
 	in.basis = in.choice("payback.co2.basis", "Change the basis of the CO2 factor", "energy.co2_basis", []string{"location", "market"})
 	in.ofPrice = container.NewVBox(widgets.Row("  it is", in.origin, nil), widgets.FieldRow("  note", in.note))
 	in.ofCO2 = container.NewVBox(widgets.FieldRow("  of the year", in.year), widgets.Row("  basis", in.basis, nil))
+	in.ofFuel = container.NewVBox(widgets.FieldRow("Price of fuel", in.fuelPrice), widgets.FieldRow("CO2 of fuel", in.fuelCO2))
 	in.content = container.NewVBox(
 		widgets.Card("Energy", container.NewVBox(
 			widgets.FieldRow("Price of energy", in.price), in.band, in.ofPrice, in.credit,
-			widgets.FieldRow("CO2 factor", in.co2), in.ofCO2)),
+			widgets.FieldRow("CO2 factor", in.co2), in.ofCO2, in.ofFuel)),
 		widget.NewSeparator(),
 		widgets.Card("Hours a year", in.duties),
 		widget.NewSeparator(),
@@ -166,6 +170,7 @@ func (in *inputs) show() {
 		in.co2.SetValue("", in.ctx.Local("Not given yet; type one, such as 0.35 kg/kWh."))
 		in.ofCO2.Hide()
 	}
+	in.showFuel(f)
 	year := ""
 	if f.CO2Year > 0 {
 		year = strconv.Itoa(f.CO2Year)
@@ -174,6 +179,25 @@ func (in *inputs) show() {
 	choose(in.basis, f.CO2Basis)
 	in.showHours(f)
 	in.showCosts(f)
+}
+
+// showFuel shows what fuel costs and emits, where an engine burns it.
+func (in *inputs) showFuel(f *audit.File) {
+	if !f.Burns() {
+		in.ofFuel.Hide()
+		return
+	}
+	in.ofFuel.Show()
+	text, hint := "", in.ctx.Local("Not given yet; type what a litre or a kilogram costs, such as 1.6 "+currency(in.ctx).Symbol+"/L.")
+	if f.HasFuelPrice {
+		text, hint = f.FuelPrice.Text, said(f.FuelPrice)
+	}
+	in.fuelPrice.SetValue(text, hint)
+	text, hint = "", in.ctx.Local("Not given: 2.66 kg/L, mineral diesel.")
+	if f.HasFuelCO2 {
+		text, hint = f.FuelCO2.Text, said(f.FuelCO2)
+	}
+	in.fuelCO2.SetValue(text, hint)
 }
 
 func (in *inputs) showPrice(f *audit.File) {
