@@ -110,7 +110,7 @@ func (s *Series) rest(l *layout) {
 		}
 	}
 	k := 0
-	l.walk(func(g instant) {
+	for g := range l.steps {
 		for i := range s.Axes {
 			a := &s.Axes[i]
 			a.Standing[k] = l.stands(i, g)
@@ -119,7 +119,7 @@ func (s *Series) rest(l *layout) {
 			}
 		}
 		k++
-	})
+	}
 }
 
 // StandsUnder reports whether an axis ever stands under more than a share of its largest load.
@@ -128,11 +128,13 @@ func (d *Duty) StandsUnder(axis Axis, share float64) bool {
 	if load == nil {
 		return false
 	}
-	l, top, found := newLayout(d, []Axis{axis}, false), load.top(), false
-	l.walk(func(g instant) {
-		found = found || l.stands(0, g) && math.Abs(load.at(g.seg, g.t)) > share*top
-	})
-	return found
+	l, least := newLayout(d, []Axis{axis}, false), share*load.top()
+	for g := range l.steps {
+		if l.stands(0, g) && math.Abs(load.at(g.seg, g.t)) > least {
+			return true
+		}
+	}
+	return false
 }
 
 // Part returns time steps from up to but not with to; it shares the columns of s.
