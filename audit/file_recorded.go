@@ -44,17 +44,41 @@ func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node) Source {
 			r.bad(in, n, c.Name, "%v, between brackets in the head", err)
 			continue
 		}
-		si := make([]float64, len(c.Values))
-		for i, x := range c.Values {
-			si[i] = u.ToSI(x)
-		}
-		r.keep(d, c.Name, si)
+		r.keep(d, c.Name, table.in(c, u))
 	}
 	return Source{File: name, SHA256: table.SHA256}
 }
 
+// recorded is a recording with its columns as a duty has them: an edit reads the audit
+// file again, but neither the recording nor its units.
+type recorded struct {
+	*recording.Table
+	si map[columnIn][]float64
+}
+
+type columnIn struct {
+	column string
+	unit   units.Unit
+}
+
+// in returns a column in SI; one that is in SI is not copied.
+func (t *recorded) in(c recording.Column, u units.Unit) []float64 {
+	if u.Factor == 1 && u.Offset == 0 {
+		return c.Values
+	}
+	of := columnIn{c.Name, u}
+	if t.si[of] == nil {
+		si := make([]float64, len(c.Values))
+		for i, x := range c.Values {
+			si[i] = u.ToSI(x)
+		}
+		t.si[of] = si
+	}
+	return t.si[of]
+}
+
 // table reads a recording, once.
-func (r *reader) table(s scope, n *yaml.Node, name string) *recording.Table {
+func (r *reader) table(s scope, n *yaml.Node, name string) *recorded {
 	f := r.file
 	if t := f.tables[name]; t != nil {
 		return t
@@ -75,8 +99,9 @@ func (r *reader) table(s scope, n *yaml.Node, name string) *recording.Table {
 	for _, fault := range faults {
 		r.bad(s, n, "file", "%v", fault)
 	}
-	if t != nil {
-		f.tables[name] = t
+	if t == nil {
+		return nil
 	}
-	return t
+	f.tables[name] = &recorded{t, map[columnIn][]float64{}}
+	return f.tables[name]
 }
