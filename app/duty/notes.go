@@ -99,16 +99,16 @@ func (s *Station) standstill(d *cycle.Duty) [][2]string {
 	}
 	var out [][2]string
 	share := s.ctx.Local(units.Format(cycle.StandstillShare, units.Percent, 2))
-	for _, a := range d.Series(s.ctx.Doc().File().Axes, false).Axes {
+	for _, a := range s.ctx.Doc().File().Axes {
 		dim := units.Velocity
-		if a.Axis.Kind == cycle.Rotary {
+		if a.Kind == cycle.Rotary {
 			dim = units.AngularSpeed
 		}
-		if a.Top > 0 {
-			out = append(out, [2]string{a.Axis.Name, fmt.Sprintf("Axis %s counts as standing below %s, %s of its highest speed %s.",
-				a.Axis.Name, s.slow(cycle.StandstillShare*a.Top, dim), share, s.ctx.Text(a.Top, dim, 3))})
-		} else if a.Speed != nil {
-			out = append(out, [2]string{a.Axis.Name, "Axis " + a.Axis.Name + " stands throughout."})
+		if top, given := d.TopSpeed(a.Name); top > 0 {
+			out = append(out, [2]string{a.Name, fmt.Sprintf("Axis %s counts as standing below %s, %s of its highest speed %s.",
+				a.Name, s.slow(cycle.StandstillShare*top, dim), share, s.ctx.Text(top, dim, 3))})
+		} else if given {
+			out = append(out, [2]string{a.Name, "Axis " + a.Name + " stands throughout."})
 		}
 	}
 	return out

@@ -15,7 +15,8 @@ type track struct {
 	of     string
 	what   string
 	unit   units.Unit
-	values []float64 // SI
+	values []float64   // SI
+	course audit.Track // values over time, thinned for plots
 }
 
 // quantities of the tracks, for axes along a line and axes that turn.
@@ -38,7 +39,7 @@ func (s *Station) tracksOf(d *cycle.Duty) []track {
 		if dims, ok := quantities[t.What]; ok {
 			u = units.Preferred(dims[kind], sys)
 		}
-		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), unit: u, values: t.Values})
+		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), unit: u, values: t.Values, course: audit.CourseOf(d, t)})
 	}
 	for _, a := range s.ctx.Doc().File().Axes {
 		known[a.Name] = true
@@ -64,7 +65,7 @@ func (s *Station) fillPlot(d *cycle.Duty) {
 			role = figures.RoleInk
 		}
 		p.Lanes = append(p.Lanes, figures.Lane{Title: t.of + " " + t.what, Unit: t.unit.Label(), Zero: true,
-			Series: []figures.Series{{Name: "asked", X: inUnit(d.Time, s.tracks[0].unit), Y: inUnit(t.values, t.unit), Role: role}}})
+			Series: []figures.Series{{Name: "asked", X: inUnit(t.course.T, s.tracks[0].unit), Y: inUnit(t.course.V, t.unit), Role: role}}})
 	}
 	s.plot.SetMin(fyne.NewSize(300, float32(60+62*len(p.Lanes))))
 	s.plot.SetPlot(p)

@@ -1,9 +1,6 @@
 package duty
 
-import (
-	"math"
-	"slices"
-)
+import "slices"
 
 // StandstillShare is the share of an axis' largest speed (or command) below
 // which it counts as standing. Recordings never read exactly zero; 0.1 % of the
@@ -120,21 +117,6 @@ func (s *Series) rest(l *layout) {
 		}
 		k++
 	}
-}
-
-// StandsUnder reports whether an axis ever stands under more than a share of its largest load.
-func (d *Duty) StandsUnder(axis Axis, share float64) bool {
-	load := d.column(axis.Name, Load)
-	if load == nil {
-		return false
-	}
-	l, least := newLayout(d, []Axis{axis}, false), share*load.top()
-	for g := range l.steps {
-		if l.stands(0, g) && math.Abs(load.at(g.seg, g.t)) > least {
-			return true
-		}
-	}
-	return false
 }
 
 // Part returns time steps from up to but not with to; it shares the columns of s.
