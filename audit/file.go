@@ -10,7 +10,6 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
-	"barlitre/circuit/recording"
 )
 
 // Format is the first line of an audit file: `format: barlitre/1`.
@@ -143,7 +142,7 @@ type File struct {
 	data   []byte
 	root   *yaml.Node // the top mapping, or nil
 	open   Open
-	tables map[string]*recording.Table
+	tables map[string]*recorded
 	found  []circuit.Finding
 }
 
@@ -222,7 +221,7 @@ func Read(path string) (*File, []circuit.Finding) {
 // Parse reads an audit file from memory, as Read does; open reads the recordings
 // that it names and may be nil when there are none. path is kept for Save.
 func Parse(data []byte, open Open, path string) (*File, []circuit.Finding) {
-	return parse(slices.Clone(data), open, path, map[string]*recording.Table{})
+	return parse(slices.Clone(data), open, path, map[string]*recorded{})
 }
 
 // Circuit returns a circuit by name, or nil.

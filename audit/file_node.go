@@ -9,7 +9,6 @@ import (
 	"gopkg.in/yaml.v3"
 
 	"barlitre/circuit"
-	"barlitre/circuit/recording"
 )
 
 // reader turns the node tree of a file into a File and collects what is wrong.
@@ -235,7 +234,7 @@ func (r *reader) plain(n *yaml.Node) bool {
 }
 
 // parse is Parse with the recordings that are read already.
-func parse(data []byte, open Open, path string, tables map[string]*recording.Table) (*File, []circuit.Finding) {
+func parse(data []byte, open Open, path string, tables map[string]*recorded) (*File, []circuit.Finding) {
 	f := &File{Path: path, data: data, open: open, tables: tables}
 	r := &reader{file: f, axes: map[string]bool{}, blocks: map[string]bool{}}
 	root, faults := load(data)

@@ -17,7 +17,7 @@ func (r *reader) measured(s scope, b *circuit.Block, kind *circuit.Kind, n *yaml
 	if table == nil || !ok || full.SI <= 0 {
 		return // said already, or said by the check
 	}
-	got, _, err := machines.ReadPoints(pointColumns(table), table.Lines, full.SI)
+	got, _, err := machines.ReadPoints(pointColumns(table.Table), table.Lines, full.SI)
 	if err != nil {
 		r.bad(s, n, "points", "%s: %v", name, err)
 		return

@@ -27,7 +27,7 @@ func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node, columns entry) So
 	if columns.at == nil {
 		for i := range table.Columns {
 			c := &table.Columns[i]
-			tracks = append(tracks, recordedTrack{c.Name, c, c.Unit, n})
+			tracks = append(tracks, recordedTrack{c.Name, c, table, c.Unit, n})
 		}
 	} else {
 		tracks = r.columns(s, table, name, columns.value)
@@ -48,7 +48,7 @@ func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node, columns entry) So
 }
 
 // beside reads the table that a key names, beside the audit file.
-func (r *reader) beside(s scope, n *yaml.Node, key string) (table *recording.Table, name string) {
+func (r *reader) beside(s scope, n *yaml.Node, key string) (table *recorded, name string) {
 	name, ok := r.scalar(s, n, key, "the name of a CSV file")
 	if !ok {
 		return nil, name
@@ -64,13 +64,14 @@ func (r *reader) beside(s scope, n *yaml.Node, key string) (table *recording.Tab
 type recordedTrack struct {
 	name string
 	*recording.Column
-	unit string
-	at   *yaml.Node
+	table *recorded
+	unit  string
+	at    *yaml.Node
 }
 
 // columns reads which column is which track, as in ram.load: "F1 [kN]". The unit may
 // stand here or in the head of the recording.
-func (r *reader) columns(s scope, table *recording.Table, file string, n *yaml.Node) (out []recordedTrack) {
+func (r *reader) columns(s scope, table *recorded, file string, n *yaml.Node) (out []recordedTrack) {
 	in := s.in("columns")
 	var heads []string
 	for _, c := range table.Columns {
@@ -94,7 +95,7 @@ func (r *reader) columns(s scope, table *recording.Table, file string, n *yaml.N
 			if unit == "" {
 				unit = c.Unit
 			}
-			out = append(out, recordedTrack{e.key, c, unit, e.value})
+			out = append(out, recordedTrack{e.key, c, table, unit, e.value})
 		}
 	}
 	return out
@@ -112,15 +113,39 @@ func (r *reader) track(s scope, d *duty.Duty, tr recordedTrack) {
 		r.bad(s, tr.at, tr.name, "%v, between brackets in the head", err)
 		return
 	}
-	si := make([]float64, len(tr.Values))
-	for i, x := range tr.Values {
-		si[i] = u.ToSI(x)
+	r.keep(d, tr.name, tr.table.in(*tr.Column, u))
+}
+
+// recorded is a recording with its columns as a duty has them: an edit reads the audit
+// file again, but neither the recording nor its units.
+type recorded struct {
+	*recording.Table
+	si map[columnIn][]float64
+}
+
+type columnIn struct {
+	column string
+	unit   units.Unit
+}
+
+// in returns a column in SI; one that is in SI is not copied.
+func (t *recorded) in(c recording.Column, u units.Unit) []float64 {
+	if u.Factor == 1 && u.Offset == 0 {
+		return c.Values
 	}
-	r.keep(d, tr.name, si)
+	of := columnIn{c.Name, u}
+	if t.si[of] == nil {
+		si := make([]float64, len(c.Values))
+		for i, x := range c.Values {
+			si[i] = u.ToSI(x)
+		}
+		t.si[of] = si
+	}
+	return t.si[of]
 }
 
 // table reads a recording, once.
-func (r *reader) table(s scope, n *yaml.Node, key, name string) *recording.Table {
+func (r *reader) table(s scope, n *yaml.Node, key, name string) *recorded {
 	f := r.file
 	if t := f.tables[name]; t != nil {
 		return t
@@ -141,8 +166,9 @@ func (r *reader) table(s scope, n *yaml.Node, key, name string) *recording.Table
 	for _, fault := range faults {
 		r.bad(s, n, key, "%v", fault)
 	}
-	if t != nil {
-		f.tables[name] = t
+	if t == nil {
+		return nil
 	}
-	return t
+	f.tables[name] = &recorded{t, map[columnIn][]float64{}}
+	return f.tables[name]
 }

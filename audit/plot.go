@@ -4,6 +4,7 @@ import (
 	"sort"
 
 	"barlitre/circuit"
+	"barlitre/circuit/duty"
 	"barlitre/machines/units"
 )
 
@@ -56,4 +57,40 @@ func (p *Plot) Signal(name string) *Track {
 		}
 	}
 	return nil
+}
+
+// CourseOf returns what a track of a duty asks for over time, thinned as in a Plot.
+func CourseOf(d *duty.Duty, asked duty.Track) Track {
+	t, v := d.Time, asked.Values
+	n := min(len(t), len(v))
+	k := Track{Name: asked.Of, Title: asked.What.String(), T: t[:n:n], V: v[:n:n]}
+	if n <= PlotPoints {
+		return k
+	}
+	k.T, k.V = make([]float64, 0, PlotPoints), make([]float64, 0, PlotPoints)
+	k.put(t[0], v[0])
+	stretch := strideOf(n)
+	for from := 1; from < n-1; from += stretch {
+		low, top := from, from
+		for i := from; i < min(from+stretch, n-1); i++ {
+			if v[i] < v[low] {
+				low = i
+			}
+			if v[i] > v[top] {
+				top = i
+			}
+		}
+		k.put(t[min(low, top)], v[min(low, top)])
+		if low != top {
+			k.put(t[max(low, top)], v[max(low, top)])
+		}
+	}
+	k.put(t[n-1], v[n-1])
+	return k
+}
+
+// strideOf is how many time steps a stretch has where steps are too many to keep.
+func strideOf(steps int) int {
+	const stretches = (PlotPoints - 2) / 2 // the first and the last step are kept besides
+	return (steps + stretches - 1) / stretches
 }

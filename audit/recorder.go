@@ -35,9 +35,7 @@ func newRecorder(signals []circuit.Signal, channels []circuit.Channel, steps int
 	r := &recorder{plot: p, stride: 1}
 	size := steps
 	if p.Thinned {
-		stretches := (PlotPoints - 2) / 2
-		r.stride = (steps + stretches - 1) / stretches
-		size = PlotPoints
+		r.stride, size = strideOf(steps), PlotPoints
 	}
 	track := func(name, title string, d units.Dim) Track {
 		return Track{Name: name, Title: title, Dim: d, T: make([]float64, 0, size), V: make([]float64, 0, size)}

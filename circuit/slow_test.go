@@ -58,7 +58,7 @@ func TestAccumulatorCircuitFindsItsPeriod(t *testing.T) {
 	lo, hi := math.Inf(1), 0.0
 	for i, sig := range k.signals {
 		if sig.Name == "AC1.P.p" {
-			lo, hi = w.ext[i].min, w.ext[i].max
+			lo, hi = w.ext.min[i], w.ext.max[i]
 		}
 	}
 	// It switches at 180 bar; below 150 bar it falls a little further while the cylinder takes more than the pump gives.

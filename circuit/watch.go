@@ -18,7 +18,7 @@ type Watch struct {
 	steps  int
 	cycles int // that are over
 	lastT  float64
-	ext    []extreme
+	ext    extremes
 	axes   []axisWatch
 	motors []motorWatch
 	reds   []reliefWatch
@@ -32,8 +32,28 @@ type Watch struct {
 	sets   []startWatch
 }
 
-// extreme is the range of a signal and when it was reached.
-type extreme struct{ min, max, tMin, tMax float64 }
+// extremes are the ranges of the signals, by signal, and when they were reached.
+type extremes struct{ min, max, tMin, tMax []float64 }
+
+func newExtremes(signals int) extremes {
+	e := extremes{make([]float64, signals), make([]float64, signals), make([]float64, signals), make([]float64, signals)}
+	for i := range e.min {
+		e.min[i], e.max[i] = math.Inf(1), math.Inf(-1)
+	}
+	return e
+}
+
+func (e *extremes) take(t float64, values []float64) {
+	low, high := e.min[:len(values)], e.max[:len(values)]
+	for i, v := range values {
+		if v < low[i] {
+			low[i], e.tMin[i] = v, t
+		}
+		if v > high[i] {
+			high[i], e.tMax[i] = v, t
+		}
+	}
+}
 
 type axisWatch struct {
 	short            float64 // s
@@ -79,10 +99,7 @@ type voidWatch struct{ worst, t, volume, last float64 }
 
 // NewWatch makes a Watch for one run over a series.
 func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
-	w := &Watch{c: c, series: s, params: params, ext: make([]extreme, len(c.signals)), axes: make([]axisWatch, len(c.axes)), voids: make([]voidWatch, len(c.nodes))}
-	for i := range w.ext {
-		w.ext[i] = extreme{min: math.Inf(1), max: math.Inf(-1)}
-	}
+	w := &Watch{c: c, series: s, params: params, ext: newExtremes(len(c.signals)), axes: make([]axisWatch, len(c.axes)), voids: make([]voidWatch, len(c.nodes))}
 	for i := range w.axes {
 		w.axes[i].ratio = 1
 	}
@@ -167,15 +184,7 @@ func (w *Watch) take(s *Sample) {
 	if s.Unbalanced {
 		return // its numbers mean nothing
 	}
-	for i, v := range s.Signals {
-		e := &w.ext[i]
-		if v < e.min {
-			e.min, e.tMin = v, s.T
-		}
-		if v > e.max {
-			e.max, e.tMax = v, s.T
-		}
-	}
+	w.ext.take(s.T, s.Signals)
 	w.cycle(s.T, dt)
 	for i := range w.axes {
 		w.axes[i].creeps(s.Axes[i], w.series.Axes[i].Given, s.T, dt)
@@ -331,8 +340,8 @@ type Peak struct {
 func (w *Watch) PeakPressure() Peak {
 	best := Peak{Value: math.Inf(-1)}
 	for i, s := range w.c.signals {
-		if s.What == "p" && w.ext[i].max > best.Value {
-			best = Peak{Value: w.ext[i].max, At: s.Block + "." + s.Port, T: w.ext[i].tMax}
+		if s.What == "p" && w.ext.max[i] > best.Value {
+			best = Peak{Value: w.ext.max[i], At: s.Block + "." + s.Port, T: w.ext.tMax[i]}
 		}
 	}
 	if math.IsInf(best.Value, 0) {
@@ -362,4 +371,4 @@ func (w *Watch) fastRamp(t float64) bool {
 }
 
 // Extreme returns the range of a signal over the run.
-func (w *Watch) Extreme(signal int) (min, max float64) { return w.ext[signal].min, w.ext[signal].max }
+func (w *Watch) Extreme(signal int) (min, max float64) { return w.ext.min[signal], w.ext.max[signal] }

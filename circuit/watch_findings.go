@@ -60,8 +60,8 @@ func (w *Watch) ratings(f *findings) {
 		}
 		top, at, port := 0.0, 0.0, ""
 		for i, s := range w.c.signals {
-			if s.Block == b.ID && s.What == "p" && w.ext[i].max > top {
-				top, at, port = w.ext[i].max, w.ext[i].tMax, s.Port
+			if s.Block == b.ID && s.What == "p" && w.ext.max[i] > top {
+				top, at, port = w.ext.max[i], w.ext.tMax[i], s.Port
 			}
 		}
 		if top > v.SI {
@@ -152,15 +152,15 @@ func (w *Watch) accumulators(f *findings) {
 			continue
 		}
 		p0 := (w.value(b, "precharge") + atm) * w.value(b, "gas_temperature") / 293.15
-		lo, hi := w.ext[i].min+atm, w.ext[i].max+atm
+		lo, hi := w.ext.min[i]+atm, w.ext.max[i]+atm
 		switch {
 		case lo <= p0*1.0001:
-			f.add(Warns, b, "precharge", w.ext[i].tMin, "it runs empty: the pressure falls to its pre-charge of %s; lower the pre-charge or the band", show(p0-atm, units.Pressure))
+			f.add(Warns, b, "precharge", w.ext.tMin[i], "it runs empty: the pressure falls to its pre-charge of %s; lower the pre-charge or the band", show(p0-atm, units.Pressure))
 		case lo < 1.1*p0:
-			f.add(Note, b, "precharge", w.ext[i].tMin, "its lowest pressure %s is less than 1.1 times the pre-charge %s, both absolute at the gas temperature; a bladder may strike its valve (common practice p0 <= 0.9·p1; its maker's limits come first)", show(lo-atm, units.Pressure), show(p0-atm, units.Pressure))
+			f.add(Note, b, "precharge", w.ext.tMin[i], "its lowest pressure %s is less than 1.1 times the pre-charge %s, both absolute at the gas temperature; a bladder may strike its valve (common practice p0 <= 0.9·p1; its maker's limits come first)", show(lo-atm, units.Pressure), show(p0-atm, units.Pressure))
 		}
 		if hi > 4*p0 {
-			f.add(Note, b, "precharge", w.ext[i].tMax, "its highest pressure %s is more than 4 times the pre-charge %s, both absolute at the gas temperature; a bladder is folded too far or the pre-charge is lost (common practice p2 <= 4·p0; pistons stand more, its maker's limits come first)", show(hi-atm, units.Pressure), show(p0-atm, units.Pressure))
+			f.add(Note, b, "precharge", w.ext.tMax[i], "its highest pressure %s is more than 4 times the pre-charge %s, both absolute at the gas temperature; a bladder is folded too far or the pre-charge is lost (common practice p2 <= 4·p0; pistons stand more, its maker's limits come first)", show(hi-atm, units.Pressure), show(p0-atm, units.Pressure))
 		}
 	}
 }

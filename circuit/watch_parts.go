@@ -20,9 +20,7 @@ func (w *Watch) Join(part Receiver) error {
 	w.span += p.span
 	w.starts += p.starts
 	w.lastT, w.stop = p.lastT, p.stop
-	for i := range w.ext {
-		w.ext[i].join(p.ext[i])
-	}
+	w.ext.join(&p.ext)
 	for i := range w.axes {
 		w.axes[i].join(&p.axes[i])
 	}
@@ -72,9 +70,11 @@ func earlier(v, t *float64, found, at float64) {
 	}
 }
 
-func (e *extreme) join(o extreme) {
-	later(&e.max, &e.tMax, o.max, o.tMax)
-	earlier(&e.min, &e.tMin, o.min, o.tMin)
+func (e *extremes) join(o *extremes) {
+	for i := range e.min {
+		later(&e.max[i], &e.tMax[i], o.max[i], o.tMax[i])
+		earlier(&e.min[i], &e.tMin[i], o.min[i], o.tMin[i])
+	}
 }
 
 func (a *axisWatch) join(o *axisWatch) {

@@ -212,7 +212,7 @@ func (w *Watch) creepGates(i int) []Gate {
 func (w *Watch) fastest(i int) float64 {
 	for j, s := range w.c.signals {
 		if s.Block == w.c.movers[i].block && (s.What == "v" || s.What == "w") {
-			v := math.Max(math.Abs(w.ext[j].min), math.Abs(w.ext[j].max))
+			v := math.Max(math.Abs(w.ext.min[j]), math.Abs(w.ext.max[j]))
 			if s.What == "w" {
 				v /= w.value(w.c.circuit.Block(s.Block), "gear")
 			}

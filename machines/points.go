@@ -136,7 +136,7 @@ func understand(c Column) (pointQuantity, units.Unit) {
 // Quantities are those of ISO 4409, with the flow at the pressure of its port. full is the displacement at full setting
 // [m³/rad]; 0 takes the largest in the table. lines are the lines of the rows in their file. The errors say what is
 // missing.
-func ReadPoints(columns []Column, lines []int, full float64) (*Measured, float64, error) {
+func ReadPoints(columns []Column, lines []int32, full float64) (*Measured, float64, error) {
 	r := &pointReader{si: map[pointQuantity][]float64{}, m: &Measured{}}
 	for _, c := range columns {
 		if err := r.take(c); err != nil {
@@ -154,7 +154,7 @@ func ReadPoints(columns []Column, lines []int, full float64) (*Measured, float64
 		if err != nil {
 			return nil, full, fmt.Errorf("line %d: %w", lines[i], err)
 		}
-		p.Line = lines[i]
+		p.Line = int(lines[i])
 		r.m.Points = append(r.m.Points, p)
 	}
 	r.turn()

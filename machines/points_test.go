@@ -17,7 +17,7 @@ func TestReadPointsOfAnySpelling(t *testing.T) {
 		{{"Speed (rpm)", "", []float64{1500}}, {"p2 (bar)", "", []float64{202}}, {"p1 (bar)", "", []float64{2}}, {"flow (l/min)", "", []float64{80}}, {"shaft power (kW)", "", []float64{200 * 1500 * units.RPM / 1e3}}, {"setting (%)", "", []float64{100}}},
 		{{"n in rpm", "", []float64{1500}}, {"dp in psi", "", []float64{200e5 / units.PSI}}, {"q_L_min", "", []float64{80}}, {"drain_L_min", "", []float64{2}}, {"M / Nm", "", []float64{200}}},
 	} {
-		m, d, err := ReadPoints(c, []int{2}, 57*cm3)
+		m, d, err := ReadPoints(c, []int32{2}, 57*cm3)
 		if err != nil {
 			t.Errorf("%v: %v", c, err)
 			continue
@@ -36,12 +36,12 @@ func TestReadPointsOfAnySpelling(t *testing.T) {
 func TestReadPointsOfAMotor(t *testing.T) {
 	law := NewDisplacement(80 * cm3)
 	var n, dp, q, T []float64
-	var lines []int
+	var lines []int32
 	for _, w := range []float64{50, 100, 200} {
 		for _, p := range []float64{5e6, 1e7, 2e7} {
 			n, dp = append(n, w), append(dp, p)
 			q, T = append(q, law.Flow(1, w, -p, oilMu, oilRho, oilBulk)), append(T, -law.Torque(1, w, -p, oilMu, oilRho))
-			lines = append(lines, len(lines)+2)
+			lines = append(lines, int32(len(lines)+2))
 		}
 	}
 	m, _, err := ReadPoints([]Column{{"n", "rad/s", n}, {"dp", "Pa", dp}, {"q", "m3/s", q}, {"T", "N m", T}}, lines, 80*cm3)
@@ -74,7 +74,7 @@ func TestReadPointsRefusals(t *testing.T) {
 		{col("rpm", "dp_bar", "q_Lmin", "T_Nm", "n_rpm"), 1, "two columns"}, {col("rpm", "dp_bar", "q_Lmin", "T_Nm", "V_cm3"), 5 * cm3, "110 %"},
 		{[]Column{{"rpm", "", []float64{0}}, {"dp_bar", "", []float64{1}}, {"q_Lmin", "", []float64{1}}, {"T_Nm", "", []float64{1}}}, 1, "line 2"},
 	} {
-		if _, _, err := ReadPoints(c.cols, []int{2}, c.full); err == nil || !strings.Contains(err.Error(), c.want) {
+		if _, _, err := ReadPoints(c.cols, []int32{2}, c.full); err == nil || !strings.Contains(err.Error(), c.want) {
 			t.Errorf("%v: %v, want %q", c.cols, err, c.want)
 		}
 	}

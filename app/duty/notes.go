@@ -98,18 +98,18 @@ func (s *Station) standstill(d *cycle.Duty) [][2]string {
 		return nil // said as findings
 	}
 	var out [][2]string
-	for _, a := range d.Series(s.ctx.Doc().File().Axes, false).Axes {
+	for _, a := range s.ctx.Doc().File().Axes {
 		dim := units.Velocity
-		if a.Axis.Kind == cycle.Rotary {
+		if a.Kind == cycle.Rotary {
 			dim = units.AngularSpeed
 		}
-		if a.Top > 0 {
-			limit := d.StandsBelow(a.Axis.Name, a.Top)
-			share := s.ctx.Local(units.Format(limit/a.Top, units.Percent, 2))
-			out = append(out, [2]string{a.Axis.Name, fmt.Sprintf("Axis %s counts as standing below %s, %s of its highest speed %s.",
-				a.Axis.Name, s.slow(limit, dim), share, s.ctx.Text(a.Top, dim, 3))})
-		} else if a.Speed != nil {
-			out = append(out, [2]string{a.Axis.Name, "Axis " + a.Axis.Name + " stands throughout."})
+		if top, given := d.TopSpeed(a.Name); top > 0 {
+			limit := d.StandsBelow(a.Name, top)
+			share := s.ctx.Local(units.Format(limit/top, units.Percent, 2))
+			out = append(out, [2]string{a.Name, fmt.Sprintf("Axis %s counts as standing below %s, %s of its highest speed %s.",
+				a.Name, s.slow(limit, dim), share, s.ctx.Text(top, dim, 3))})
+		} else if given {
+			out = append(out, [2]string{a.Name, "Axis " + a.Name + " stands throughout."})
 		}
 	}
 	return out

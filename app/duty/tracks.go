@@ -16,7 +16,8 @@ type track struct {
 	what   string
 	says   string // asked or measured
 	unit   units.Unit
-	values []float64 // SI
+	values []float64   // SI
+	course audit.Track // values over time, thinned for plots
 }
 
 // tracksOf returns time and tracks, axis by axis as the file lists them, then the
@@ -34,7 +35,7 @@ func (s *Station) tracksOf(d *cycle.Duty) []track {
 		if t.What.Measured() {
 			says = "measured"
 		}
-		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), says: says, unit: u, values: t.Values})
+		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), says: says, unit: u, values: t.Values, course: audit.CourseOf(d, t)})
 	}
 	for _, a := range s.ctx.Doc().File().Axes {
 		known[a.Name] = true
@@ -60,7 +61,7 @@ func (s *Station) fillPlot(d *cycle.Duty) {
 			role = figures.RoleInk
 		}
 		p.Lanes = append(p.Lanes, figures.Lane{Title: t.of + " " + t.what, Unit: t.unit.Label(), Zero: true,
-			Series: []figures.Series{{Name: t.says, X: inUnit(d.Time, s.tracks[0].unit), Y: inUnit(t.values, t.unit), Role: role}}})
+			Series: []figures.Series{{Name: t.says, X: inUnit(t.course.T, s.tracks[0].unit), Y: inUnit(t.course.V, t.unit), Role: role}}})
 	}
 	s.plot.SetMin(fyne.NewSize(300, float32(60+62*len(p.Lanes))))
 	s.plot.SetPlot(p)

@@ -205,20 +205,7 @@ func (f *Frame) firstMotion() float64 {
 	case len(d.Check()) > 0:
 		return d.Time[0]
 	}
-	series := d.Series(f.doc.File().Axes, false)
-	best, at := 0.0, d.Time[0]
-	for k, t := range series.T {
-		sum := 0.0
-		for _, a := range series.Axes {
-			if a.Speed != nil && a.Load != nil {
-				sum += math.Abs(a.Speed[k] * a.Load[k])
-			}
-		}
-		if sum > best {
-			best, at = sum, t
-		}
-	}
-	return at
+	return d.Busiest(f.doc.File().Axes)
 }
 
 // span is the time of the duty at hand [s].

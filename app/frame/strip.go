@@ -9,6 +9,7 @@ import (
 	"fyne.io/fyne/v2/driver/desktop"
 
 	"barlitre/app/widgets"
+	"barlitre/audit"
 	"barlitre/audit/figures"
 	"barlitre/audit/pen"
 	"barlitre/circuit/duty"
@@ -102,12 +103,13 @@ func (s *strip) lanes(d *duty.Duty, axes []duty.Axis) figures.Plot {
 			lane[key] = i
 			plot.Lanes = append(plot.Lanes, figures.Lane{Title: tr.Of + " " + tr.What.String(), Unit: u.Label(), Zero: true})
 		}
-		y := make([]float64, len(tr.Values))
-		for k, v := range tr.Values {
+		asked := audit.CourseOf(d, tr)
+		y := make([]float64, len(asked.V))
+		for k, v := range asked.V {
 			y[k] = u.FromSI(v)
 		}
 		n := len(plot.Lanes[i].Series)
-		plot.Lanes[i].Series = append(plot.Lanes[i].Series, figures.Series{Name: tr.Of, X: d.Time, Y: y, Role: roles[n%len(roles)], Dash: n > 0})
+		plot.Lanes[i].Series = append(plot.Lanes[i].Series, figures.Series{Name: tr.Of, X: asked.T, Y: y, Role: roles[n%len(roles)], Dash: n > 0})
 		if n > 0 {
 			plot.Lanes[i].Title = tr.What.String()
 		}

@@ -89,7 +89,8 @@ func (l *layout) asked(i int) []figures.Lane {
 			u = units.Preferred(t.What.Dim(kind), l.r.System)
 		}
 		lane := figures.Lane{Title: t.Of + " " + t.What.String(), Unit: u.Label(), Zero: true}
-		lane.Series = []figures.Series{{Name: "asked", X: d.Time, Y: inUnit(t.Values, u), Role: figures.RoleInk}}
+		asked := audit.CourseOf(d, t)
+		lane.Series = []figures.Series{{Name: "asked", X: asked.T, Y: inUnit(asked.V, u), Role: figures.RoleInk}}
 		switch {
 		case t.What == duty.Speed:
 			lane.Series = append(lane.Series, l.delivered(i, t.Of, u)...)

@@ -57,7 +57,9 @@ func (l *layout) laid(columns []*column) [][]float64 {
 	a, b, shared := l.rows()
 	steps := 0
 	if !shared {
-		l.walk(func(instant) { steps++ })
+		for range l.steps {
+			steps++
+		}
 	}
 	for i, c := range columns {
 		switch {
@@ -68,13 +70,13 @@ func (l *layout) laid(columns []*column) [][]float64 {
 		}
 	}
 	if !shared {
-		l.walk(func(g instant) {
+		for g := range l.steps {
 			for i, c := range columns {
 				if c != nil {
 					out[i] = append(out[i], c.at(g.seg, g.t))
 				}
 			}
-		})
+		}
 	}
 	return out
 }
@@ -89,10 +91,10 @@ func (l *layout) stands(axis int, g instant) bool {
 	return c == nil || math.Abs(c.at(g.seg, at)) <= l.limit[axis]
 }
 
-// walk goes through the time steps: rows, multiples of Step, and the instants at
+// steps goes through the time steps: rows, multiples of Step, and the instants at
 // which |rest| crosses its limit. Two stretches keep their common instant each,
 // as two time steps, where something jumps there; elsewhere they share one.
-func (l *layout) walk(emit func(instant)) {
+func (l *layout) steps(yield func(instant) bool) {
 	last := instant{seg: -1}
 	for seg := 0; seg+1 < len(l.Time); seg++ {
 		t0, t1 := l.Time[seg], l.Time[seg+1]
@@ -104,30 +106,31 @@ func (l *layout) walk(emit func(instant)) {
 		for _, end := range append(l.found, t1) {
 			mid := (start + end) / 2
 			first := instant{start, seg, mid}
-			if last.seg < 0 || l.jumps(last, first) {
-				emit(first)
+			if (last.seg < 0 || l.jumps(last, first)) && !yield(first) || !l.fill(start, end, seg, mid, yield) {
+				return
 			}
-			l.fill(start, end, seg, mid, emit)
 			last = instant{end, seg, mid}
-			emit(last)
+			if !yield(last) {
+				return
+			}
 			start = end
 		}
 	}
 }
 
 // fill goes through the multiples of Step, counted from the first row, strictly inside (a, b).
-func (l *layout) fill(a, b float64, seg int, mid float64, emit func(instant)) {
+func (l *layout) fill(a, b float64, seg int, mid float64, yield func(instant) bool) bool {
 	if l.Step <= 0 {
-		return
+		return true
 	}
 	base, tiny := l.Time[0], 1e-6*l.Step
 	for i := math.Floor((a-base)/l.Step) + 1; ; i++ {
 		t := base + i*l.Step
 		if t >= b-tiny {
-			return
+			return true
 		}
-		if t > a+tiny {
-			emit(instant{t, seg, mid})
+		if t > a+tiny && !yield(instant{t, seg, mid}) {
+			return false
 		}
 	}
 }

@@ -1,9 +1,6 @@
 package duty
 
-import (
-	"math"
-	"slices"
-)
+import "slices"
 
 // StandstillShare is, unless a duty says otherwise, the share of an axis' largest speed (or command) below
 // which it counts as standing. Recordings never read exactly zero; 0.1 % of the
@@ -110,7 +107,7 @@ func (s *Series) rest(l *layout) {
 		}
 	}
 	k := 0
-	l.walk(func(g instant) {
+	for g := range l.steps {
 		for i := range s.Axes {
 			a := &s.Axes[i]
 			a.Standing[k] = l.stands(i, g)
@@ -119,20 +116,7 @@ func (s *Series) rest(l *layout) {
 			}
 		}
 		k++
-	})
-}
-
-// StandsUnder reports whether an axis ever stands under more than a share of its largest load.
-func (d *Duty) StandsUnder(axis Axis, share float64) bool {
-	load := d.column(axis.Name, Load)
-	if load == nil {
-		return false
 	}
-	l, top, found := newLayout(d, []Axis{axis}, false), load.top(), false
-	l.walk(func(g instant) {
-		found = found || l.stands(0, g) && math.Abs(load.at(g.seg, g.t)) > share*top
-	})
-	return found
 }
 
 // Part returns time steps from up to but not with to; it shares the columns of s.

@@ -36,8 +36,8 @@ type Column struct {
 // Table is a table of numbers.
 type Table struct {
 	Columns []Column
-	Lines   []int  // of the file, by row, from 1
-	SHA256  string // of the bytes read, in hexadecimal
+	Lines   []int32 // of the file, by row, from 1
+	SHA256  string  // of the bytes read, in hexadecimal
 }
 
 // Column returns a column by name, or nil.
@@ -109,7 +109,7 @@ func (r *tableReader) read(data []byte) {
 	}
 	r.comma = separator(data)
 	c := csv.NewReader(bytes.NewReader(data))
-	c.Comma, c.Comment, c.FieldsPerRecord, c.TrimLeadingSpace = r.comma, '#', -1, r.comma != '\t'
+	c.Comma, c.Comment, c.FieldsPerRecord, c.TrimLeadingSpace, c.ReuseRecord = r.comma, '#', -1, r.comma != '\t', true
 	head := true
 	for len(r.faults) <= maxFaults {
 		cells, err := c.Read()
@@ -126,6 +126,7 @@ func (r *tableReader) read(data []byte) {
 		}
 		if head {
 			r.head(line, cells)
+			r.reserve(min(bytes.Count(data, []byte("\n")), len(data)/(2*len(cells)))) // a cell and its separator are two bytes
 			head = false
 			continue
 		}
@@ -172,6 +173,14 @@ func (r *tableReader) head(line int, cells []string) {
 	}
 }
 
+// reserve makes room for rows: a long recording would else be copied as it grows.
+func (r *tableReader) reserve(rows int) {
+	r.table.Lines = make([]int32, 0, rows)
+	for i := range r.table.Columns {
+		r.table.Columns[i].Values = make([]float64, 0, rows)
+	}
+}
+
 // SplitHead splits "ram.speed [m/s]" into the name and the unit, "" when there
 // is none. ok is false when the brackets do not close at the end.
 func SplitHead(cell string) (name, unit string, ok bool) {
@@ -194,7 +203,7 @@ func (r *tableReader) row(line int, cells []string) {
 		r.bad(line, "has %d cells, the head has %d%s", len(cells), n, hint)
 		return
 	}
-	r.table.Lines = append(r.table.Lines, line)
+	r.table.Lines = append(r.table.Lines, int32(line))
 	for i, cell := range cells {
 		x, text := r.number(line, strings.TrimSpace(cell))
 		if text != "" {
@@ -227,22 +236,29 @@ func (r *tableReader) number(line int, cell string) (float64, string) {
 		}
 		r.pointLine = line
 	}
-	if !numeric(cell) {
-		return 0, fmt.Sprintf("%q is not a number", cell)
-	}
-	x, err := strconv.ParseFloat(cell, 64)
-	if err != nil {
+	x, err := decimal(cell)
+	switch {
+	case errors.Is(err, strconv.ErrRange):
 		return 0, fmt.Sprintf("%q is out of range", cell)
+	case err != nil:
+		return 0, fmt.Sprintf("%q is not a number", cell)
 	}
 	return x, ""
 }
 
-// numeric reports whether s is a decimal number: no names such as "inf", no
-// hexadecimal, which the standard library would take as well.
+// numeric reports whether s is a decimal number.
 func numeric(s string) bool {
-	if s == "" || strings.Trim(s, "0123456789+-.eE") != "" {
-		return false
-	}
-	_, err := strconv.ParseFloat(s, 64)
+	_, err := decimal(s)
 	return err == nil || errors.Is(err, strconv.ErrRange)
+}
+
+// decimal reads a decimal number: no names such as "inf", no hexadecimal, which the
+// standard library would take as well.
+func decimal(s string) (float64, error) {
+	for i := range len(s) {
+		if c := s[i]; (c < '0' || c > '9') && c != '.' && c != '-' && c != '+' && c != 'e' && c != 'E' {
+			return 0, strconv.ErrSyntax
+		}
+	}
+	return strconv.ParseFloat(s, 64)
 }

@@ -32,7 +32,7 @@ func TestReadTable(t *testing.T) {
 
 func TestReadTableNotes(t *testing.T) {
 	tab, faults := ReadTable("x.csv", []byte("# a\nt [s];V1.command\n\n0;1\n1;0,5\n"))
-	if len(faults) > 0 || tab.Columns[1].Unit != "" || !slices.Equal(tab.Lines, []int{4, 5}) {
+	if len(faults) > 0 || tab.Columns[1].Unit != "" || !slices.Equal(tab.Lines, []int32{4, 5}) {
 		t.Errorf("got %+v, %v", tab, faults)
 	}
 	// printf 't [s]\n0\n' | sha256sum
