@@ -25,6 +25,7 @@ var groups = []group{
 	{"combustion engines", []string{"engine"}},
 	{"pumps and hydraulic motors", []string{"pump", "charge_pump", "motor", "flow_divider", "gearbox"}},
 	{reliefGroup, []string{"relief"}},
+	{"accumulators", []string{"accumulator"}},
 	{"unloading and flushing", []string{"unloading", "unloading_pilot", "flushing"}},
 	{meteringGroup, []string{"valve", "section_6_3", "compensator", "flow_sharing", "orifice", "throttle_check",
 		"flow_control", "flow_control_3", "reducing", "sequence", "counterbalance"}},

@@ -18,7 +18,7 @@ var valveKind = &Kind{
 		{Name: "T", Type: Oil, Text: "return"},
 		{Name: "LS", Type: Pilot, Optional: true, Source: true, Text: "pressure of the port that is fed; zero in the centre"},
 	},
-	Params: []Param{
+	Params: append([]Param{
 		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its opening is found from the motion of this axis"},
 		{Key: "directs", Title: "Directs axis", Type: AxisRef, Text: "fully open in the direction of this axis"},
 		{Key: "centre", Title: "Centre", Type: Choice, Default: "closed", Choices: []string{"closed", "open", "tandem", "float"}, Text: "closed; open: all joined; tandem: P to T, A and B closed; float: A and B to T, P closed"},
@@ -30,10 +30,8 @@ var valveKind = &Kind{
 		{Key: "flow_AT", Title: "Nominal flow A to T", Symbol: "qAT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
 		{Key: "flow_BT", Title: "Nominal flow B to T", Symbol: "qBT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
 		{Key: "flow_centre", Title: "Nominal flow in the centre", Symbol: "qC", Dim: units.Flow, Above: true, Max: 10, Text: "of each path that is open in the centre; default: as the edges"},
-		{Key: "meter_out", Title: "Edge to tank", Type: Choice, Default: "coupled", Choices: []string{"coupled", "separate"}, Text: "coupled: one spool, the same opening on both edges; separate: an edge of its own (independent metering), open as far as the pressure at the port that is fed stays at in_pressure"},
-		{Key: "in_pressure", Title: "Pressure kept at the port fed", Symbol: "pi", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "enough to keep the fed side full, our choice", Max: 100e5, Text: "with meter_out: separate, while the load drives"},
 		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
-	},
+	}, meterOutParams...),
 	Losses: []LossKind{
 		{"metering P-A", ToOil, "P = (pP − pA)·q"}, {"metering P-B", ToOil, "P = (pP − pB)·q"},
 		{"metering A-T", ToOil, "P = (pA − pT)·q"}, {"metering B-T", ToOil, "P = (pB − pT)·q"},
@@ -60,15 +58,7 @@ var valveKind = &Kind{
 	},
 	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 		checkValve(k, b, bad)
-		separate := k.WordOf(b, "meter_out") == "separate"
-		switch _, given := b.Values["in_pressure"]; {
-		case separate && follows(b) == "":
-			bad(Stops, "meter_out", "an edge to tank of its own is for a valve that follows an axis; set follows, or meter_out: coupled")
-		case separate && b.Word("extend") == "regenerative":
-			bad(Stops, "meter_out", "the regenerative position has no edge to tank; keep one of extend: regenerative and meter_out: separate")
-		case given && !separate:
-			bad(Warns, "in_pressure", "it only counts with meter_out: separate")
-		}
+		checkMeterOut(k, b, bad)
 	},
 	build: func(k *compiler, b *Block) model {
 		m := newValve(k, b, "unloaded circulation")
@@ -112,12 +102,11 @@ type valveModel struct {
 	centre     string
 	q          [4]slot
 	open       slot // opening of a valve that follows an axis
-	out        slot // opening of a separate edge to tank
+	out        meterOut
 	qN, dN, qC int
-	inP        int
 	per        [edges]int
 	sig        [4]int // port flows P A B T
-	sigU, sigW int
+	sigU       int
 	loss       [edges]int
 	around     int
 
@@ -130,7 +119,6 @@ type valveModel struct {
 	u      float64 // commanded opening
 	now    bool    // throttling is found in this step
 	was    float64
-	kept   float64 // scaled pressure kept at the port fed
 }
 
 type branch struct {
@@ -142,7 +130,7 @@ type branch struct {
 
 // newValve makes the edges of a valve; around names the loss of what passes beside them.
 func newValve(k *compiler, b *Block, around string) valveModel {
-	m := valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, open: noSlot, out: noSlot, sigW: -1,
+	m := valveModel{id: b.ID, P: k.node(b, "P"), A: k.node(b, "A"), B: k.node(b, "B"), T: k.node(b, "T"), ls: noSlot, axis: -1, vel: noSlot, open: noSlot,
 		regen: KindNamed(b.Kind).WordOf(b, "extend") == "regenerative", centre: KindNamed(b.Kind).WordOf(b, "centre"), qN: k.param(b, "nominal_flow"), dN: k.param(b, "nominal_drop"), qC: k.param(b, "flow_centre"),
 		per:  [edges]int{k.param(b, "flow_PA"), k.param(b, "flow_PB"), k.param(b, "flow_AT"), k.param(b, "flow_BT")},
 		sig:  [4]int{k.port(b, "P"), k.port(b, "A"), k.port(b, "B"), k.port(b, "T")},
@@ -178,10 +166,7 @@ func newValve(k *compiler, b *Block, around string) valveModel {
 	if m.tracks {
 		m.open = k.unknown(otherRow, b.ID+" opening")
 	}
-	if KindNamed(b.Kind).WordOf(b, "meter_out") == "separate" {
-		m.out, m.inP = k.unknown(otherRow, b.ID+" edge to tank"), k.param(b, "in_pressure")
-		m.sigW = k.signal(b, "w", "opening of the edge to tank", units.Ratio)
-	}
+	m.out = k.meterOut(b)
 	return m
 }
 
@@ -196,9 +181,7 @@ func (m *valveModel) bind(b *binding) {
 	if m.open >= 0 {
 		b.bound.Lo[m.open], b.bound.Hi[m.open] = leastOpening, 1
 	}
-	if m.out >= 0 {
-		m.kept = b.p[m.inP] / b.scales.p
-	}
+	m.out.bind(b)
 	m.was = math.NaN()
 }
 
@@ -246,13 +229,7 @@ func (m *valveModel) begin(s *step) {
 			s.set(m.open, 0)
 		}
 	}
-	if m.out >= 0 {
-		if m.dir != 0 {
-			s.bounds(m.out, leastOpening, 1)
-		} else {
-			s.set(m.out, 0)
-		}
-	}
+	m.out.begin(s, m.dir != 0)
 	if m.dir != m.was { // another position: start its edges anew
 		m.start(s, s.x)
 		m.was = m.dir
@@ -296,8 +273,8 @@ func (m *valveModel) start(s *step, x []float64) {
 	if m.now {
 		x[m.open] = 0.3
 	}
-	if m.out >= 0 && m.dir != 0 {
-		x[m.out] = 0.3
+	if m.out.open >= 0 && m.dir != 0 {
+		x[m.out.open] = 0.3
 	}
 }
 
@@ -336,17 +313,18 @@ func (m *valveModel) eval(e *eval) {
 		}
 		// Off the centre the row is a flow, q = u·√…, so that closing the valve is no singular case.
 		full, slope := br.t.flow(e.val(br.a) - e.val(br.b))
-		u, of := u, m.open
-		if i == 1 && m.out >= 0 {
-			u, of = e.val(m.out), m.out
+		u, of := u, noSlot // the unknown that the opening is
+		switch {
+		case i == 1 && m.out.open >= 0:
+			u, of = e.val(m.out.open), m.out.open
+		case m.now:
+			of = m.open
 		}
 		e.add(q, v-u*full)
 		e.d(q, q, 1)
 		e.d(q, br.a, -u*slope)
 		e.d(q, br.b, u*slope)
-		if m.now || of == m.out {
-			e.d(q, of, -full)
-		}
+		e.d(q, of, -full)
 	}
 	if m.open >= 0 {
 		if m.now { // more opening, more speed
@@ -358,15 +336,7 @@ func (m *valveModel) eval(e *eval) {
 			e.d(m.open, m.open, 1)
 		}
 	}
-	if m.out >= 0 {
-		if m.dir == 0 {
-			e.add(m.out, e.val(m.out))
-			e.d(m.out, m.out, 1)
-		} else { // a wider way out lets the pressure at the port fed fall
-			e.add(m.out, m.kept-e.val(m.loadPort()))
-			e.d(m.out, m.loadPort(), -1)
-		}
-	}
+	m.out.eval(e, m.loadPort(), m.dir != 0)
 	if m.ls >= 0 {
 		load := m.loadPort()
 		e.add(m.ls, e.val(m.ls))
@@ -422,7 +392,5 @@ func (m *valveModel) book(k *booking) {
 		u = m.dir * m.opening(&k.eval)
 	}
 	k.put(m.sigU, u)
-	if m.out >= 0 {
-		k.put(m.sigW, k.val(m.out))
-	}
+	m.out.book(k)
 }
