@@ -139,7 +139,7 @@ func (m *electricModel) begin(s *step) {
 		if m.off {
 			v = 0
 		}
-		m.turn(s, math.Max(m.lo, v*m.hi))
+		m.turn(s, max(m.lo, v*m.hi))
 	case followsAxis:
 		a := &s.axes[m.axis]
 		m.dir = m.polarity.sign(a)
@@ -147,7 +147,7 @@ func (m *electricModel) begin(s *step) {
 		case m.off, a.standing && m.hold != "pump":
 			m.turn(s, 0)
 		case a.given != duty.MotionLoad:
-			m.turn(s, math.Max(m.lo, m.dir*a.command*m.hi))
+			m.turn(s, max(m.lo, m.dir*a.command*m.hi))
 		default:
 			s.bounds(m.speed, m.lo, m.hi)
 			m.tracking, m.wanted = true, a.scaledDemand
@@ -169,7 +169,7 @@ func (m *electricModel) turn(s *step, w float64) {
 	if w != 0 {
 		m.way = sign(w)
 	}
-	s.bounds(m.speed, math.Min(0, w), math.Max(0, w))
+	s.bounds(m.speed, min(0, w), max(0, w))
 	s.set(m.sigma, m.way)
 	if m.torque >= 0 {
 		s.set(m.torque, 0)
@@ -197,7 +197,7 @@ func (m *electricModel) book(*booking) {} // after all machines: bookShaft
 func (m *electricModel) bookShaft(k *booking) {
 	w, T := k.val(m.speed)*m.wPer, k.shaft[m.shaft].torque
 	if m.limit >= 0 && math.Abs(k.val(m.speed)) <= stalled*m.hi { // it gives what it can
-		T = math.Max(-m.most*m.tPer, math.Min(m.most*m.tPer, T))
+		T = max(-m.most*m.tPer, min(m.most*m.tPer, T))
 	}
 	P := T * w
 	loss := 0.0

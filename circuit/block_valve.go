@@ -243,7 +243,7 @@ func (m *valveModel) position(s *step) {
 	if m.given != duty.MotionLoad {
 		want = a.command
 		if !m.directs {
-			m.u = math.Max(math.Abs(want), duty.StandstillShare)
+			m.u = max(math.Abs(want), duty.StandstillShare)
 		}
 	}
 	m.dir = sign(want) * m.polarity.fixed()
@@ -254,7 +254,7 @@ func (m *valveModel) position(s *step) {
 func (m *valveModel) start(s *step, x []float64) {
 	for i, q := range m.q {
 		if q >= 0 && m.branch[i].on {
-			x[q] = math.Min(0.05, math.Abs(m.wanted)+1e-3)
+			x[q] = min(0.05, math.Abs(m.wanted)+1e-3)
 			if m.now {
 				x[q] = m.flow
 			}
@@ -282,8 +282,8 @@ func (m *valveModel) opening(e *eval) float64 {
 
 func (m *valveModel) eval(e *eval) {
 	u := m.opening(e)
-	for i, br := range m.branch {
-		q := m.q[i]
+	for i, q := range m.q {
+		br := &m.branch[i]
 		if q < 0 {
 			continue
 		}
@@ -342,7 +342,8 @@ func (m *valveModel) loadPort() slot {
 
 func (m *valveModel) book(k *booking) {
 	var q [4]float64 // into P A B T
-	for i, br := range m.branch {
+	for i := range m.branch {
+		br := &m.branch[i]
 		if m.q[i] < 0 || !br.on {
 			continue
 		}

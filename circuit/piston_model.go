@@ -136,7 +136,7 @@ func (m *pistonModel) ends(s *step, a *axisStep) {
 	if m.rests > 0 {
 		m.steep = 1 / gripFlow
 	} else {
-		m.steep = 1 / math.Min(1, math.Min(m.hi, -m.lo))
+		m.steep = 1 / min(1, min(m.hi, -m.lo))
 	}
 }
 
@@ -163,13 +163,13 @@ func (m *pistonModel) begin(s *step) {
 		s.bounds(m.v, m.lo, m.hi)
 		s.bounds(m.sigma, -1, 1)
 		if m.v >= 0 {
-			s.x[m.v] = math.Max(m.lo, math.Min(m.hi, s.x[m.v]))
+			s.x[m.v] = max(m.lo, min(m.hi, s.x[m.v]))
 		}
 	}
 	if a.standing && m.hold == "valve" {
-		s.restAt(m.pA, math.Max(a.load, 0)/m.A)
+		s.restAt(m.pA, max(a.load, 0)/m.A)
 		if m.B > 0 {
-			s.restAt(m.pB, math.Max(-a.load, 0)/m.B)
+			s.restAt(m.pB, max(-a.load, 0)/m.B)
 		}
 	}
 }

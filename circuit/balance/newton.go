@@ -16,7 +16,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 	before, planned, repeated := 0.0, false, false
 	for it := 0; ; it++ {
 		tol := Tol
-		if norm > tol && norm < 1e-6 { // else the size of x cannot decide it
+		if norm > tol && norm < 1e-6 && (it > 0 || norm <= mostTol || a.loose > 0) { // else the size of x cannot decide it
 			tol = s.tol(x)
 		}
 		if a.loose > 0 {
@@ -26,7 +26,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			if norm <= tol/64 {
 				return true, it
 			}
-		} else if norm <= tol || (norm < 1e-6 && norm > before/16 && a.delta == 0 && s.rounded(p, x, a, tol)) {
+		} else if norm <= tol || (it > 0 && norm < 1e-6 && norm > before/16 && a.delta == 0 && s.rounded(p, x, a, tol)) {
 			return true, it
 		}
 		if it == maxIt || math.IsInf(norm, 1) {
@@ -58,9 +58,7 @@ func (s *Solver) again(p Problem, x []float64, norm float64) bool {
 	}
 	s.step()
 	copy(s.xt, x[:s.n])
-	for i, d := range s.dx {
-		x[i] += d
-	}
+	s.move(x, 1)
 	if s.norm(p, x, aim{}, false) < norm {
 		return true
 	}
@@ -80,6 +78,9 @@ func (s *Solver) tol(x []float64) float64 {
 	return Tol * (1 + 0.1*math.Min(m, 1e3))
 }
 
+// mostTol is the largest that tol returns.
+const mostTol = 101 * Tol
+
 // rounded reports whether the residual is within tolerance of what rounding of
 // the unknowns can leave in steep rows: rows are weighed by their largest slope,
 // from 10,000 up.
@@ -89,8 +90,8 @@ func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
 	}
 	steep := s.xt // free between steps
 	clear(steep)
-	for k, v := range s.j.val[1:] {
-		i := s.j.row[k+1]
+	for k, v := range s.j.val[firstEntry:] {
+		i := s.j.row[k+firstEntry]
 		steep[i] = max(steep[i], math.Abs(v))
 	}
 	sum := 0.0
@@ -119,9 +120,9 @@ func (s *Solver) direction(x []float64, a aim) bool {
 			weight[i] = wg
 			s.f.a[i*n+i] = wx + wg*(a.delta+shift)
 		}
-		for k, v := range s.j.val[1:] {
-			if i := int(s.j.row[k+1]); weight[i] != 0 {
-				s.f.a[i*n+int(s.j.col[k+1])] += weight[i] * v
+		for k, v := range s.j.val[firstEntry:] {
+			if i := int(s.j.row[k+firstEntry]); weight[i] != 0 {
+				s.f.a[i*n+int(s.j.col[k+firstEntry])] += weight[i] * v
 			}
 		}
 		if piv := s.f.factor(); piv >= tinyPivot {
@@ -153,9 +154,7 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 	copy(s.xt, x[:s.n])
 	bestNorm, bestT := math.Inf(1), t
 	for k := 0; k <= 8; k++ {
-		for i := range s.dx {
-			x[i] = s.xt[i] + t*s.dx[i]
-		}
+		s.move(x, t)
 		norm := s.norm(p, x, a, false)
 		if norm < ref || norm == 0 {
 			return norm
@@ -175,10 +174,17 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 		}
 		t /= 2
 	}
-	for i := range s.dx {
-		x[i] = s.xt[i] + bestT*s.dx[i]
-	}
+	s.move(x, bestT)
 	return s.norm(p, x, a, true)
+}
+
+// move puts x a share of the step s.dx on from s.xt.
+func (s *Solver) move(x []float64, share float64) {
+	n := len(s.dx)
+	x, from := x[:n], s.xt[:n]
+	for i, d := range s.dx {
+		x[i] = from[i] + share*d
+	}
 }
 
 // reach is how much of the step s.dx from x may be taken at most.

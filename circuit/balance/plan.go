@@ -16,13 +16,13 @@ type plan struct {
 	entries int      // of the slopes it was made for
 	sparse  bool     // false: singular when it was made, use the dense factors
 	bad     int      // times a pivot was too small
-	src     []int32  // entries of the slopes, in the order of work
+	fixed   []int32  // the unknowns that rest on a bound
 	least   []float64
 	factor  []int32 // pivot, count of rows below; each: place, count, (target, source)...
 	forward []int32 // (place, row from, row to)...
 	back    []int32 // row, column, pivot, count, (place, column)...
 	tied    []int32 // (row, entry, column) by which known steps enter the other rows
-	size    int
+	size    int     // of work: the entries of the slopes, then the fill
 }
 
 const (
@@ -100,24 +100,24 @@ func (w *planner) load(j *Slopes, p *plan) {
 		clear(w.inCol[i])
 		if !bit(p.key, i) {
 			w.rows, w.cols = append(w.rows, i), append(w.cols, i)
+		} else {
+			p.fixed = append(p.fixed, int32(i))
 		}
 	}
-	p.src = make([]int32, 0, len(j.val))
-	for k := 1; k < len(j.val); k++ {
+	for k := firstEntry; k < len(j.val); k++ {
 		r, c := int(j.row[k]), int(j.col[k])
 		switch {
 		case bit(p.key, r):
 		case bit(p.key, c):
 			p.tied = append(p.tied, int32(r), int32(k), int32(c))
 		default:
-			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(len(p.src)), j.val[k]
+			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(k), j.val[k]
 			put(w.inRow[r], c)
 			put(w.inCol[c], r)
-			p.src = append(p.src, int32(k))
 			w.scale[r] = max(w.scale[r], math.Abs(j.val[k]))
 		}
 	}
-	p.size = len(p.src)
+	p.size = len(j.val)
 	for _, r := range w.rows {
 		if w.scale[r] > 0 {
 			w.scale[r] = 1 / w.scale[r]
@@ -155,12 +155,15 @@ func (w *planner) cheapest() (r, c int) {
 	r, c = -1, -1
 	best, most := math.MaxInt, 0.0
 	for _, k := range w.cols {
+		others := size(w.inCol[k]) - 1
+		if others > best { // no row here has a single entry
+			continue
+		}
 		top := 0.0
 		each(w.inCol[k], func(i int) { top = max(top, math.Abs(w.a[i*w.n+k])*w.scale[i]) })
 		if !(top >= tinyPivot) {
 			continue
 		}
-		others := size(w.inCol[k]) - 1
 		each(w.inCol[k], func(i int) {
 			v := math.Abs(w.a[i*w.n+k]) * w.scale[i]
 			if !(v >= pivotShare*top) {
@@ -231,25 +234,25 @@ func without(s []int, v int) []int {
 
 // run factors the slopes into work. It reports false when a pivot has become too small.
 func (p *plan) run(val, work []float64) bool {
-	for i, k := range p.src {
-		work[i] = val[k]
-	}
-	clear(work[len(p.src):p.size])
-	ops := p.factor
-	for i, k := 0, 0; i < len(ops); k++ {
-		v := work[ops[i]]
-		if !(math.Abs(v) >= p.least[k]) {
+	work = work[:p.size]
+	clear(work[copy(work, val):])
+	ops, least := p.factor, p.least
+	for len(ops) >= 2 && len(least) > 0 {
+		v := work[ops[0]]
+		if !(math.Abs(v) >= least[0]) {
 			return false
 		}
 		v = 1 / v
-		work[ops[i]] = v
-		below := ops[i+1]
-		for i += 2; below > 0; below-- {
-			m := work[ops[i]] * v
-			work[ops[i]] = m
-			end := i + 2 + 2*int(ops[i+1])
-			for i += 2; i < end; i += 2 {
-				work[ops[i]] -= m * work[ops[i+1]]
+		work[ops[0]] = v
+		below := ops[1]
+		ops, least = ops[2:], least[1:]
+		for ; below > 0 && len(ops) >= 2; below-- {
+			m := work[ops[0]] * v
+			work[ops[0]] = m
+			count := ops[1]
+			for ops = ops[2:]; count > 0 && len(ops) >= 2; count-- {
+				work[ops[0]] -= m * work[ops[1]]
+				ops = ops[2:]
 			}
 		}
 	}
@@ -267,13 +270,11 @@ func (p *plan) solve(val, work, b, dx []float64, moved bool) {
 	for f := p.forward; len(f) >= 3; f = f[3:] {
 		b[f[2]] -= work[f[0]] * b[f[1]]
 	}
-	ops := p.back
-	for i := 0; i < len(ops); {
-		sum := -b[ops[i]]
-		col, piv := ops[i+1], ops[i+2]
-		end := i + 4 + 2*int(ops[i+3])
-		for i += 4; i < end; i += 2 {
-			sum -= work[ops[i]] * dx[ops[i+1]]
+	for ops := p.back; len(ops) >= 4; {
+		sum, col, piv, count := -b[ops[0]], ops[1], ops[2], ops[3]
+		for ops = ops[4:]; count > 0 && len(ops) >= 2; count-- {
+			sum -= work[ops[0]] * dx[ops[1]]
+			ops = ops[2:]
 		}
 		dx[col] = sum * work[piv]
 	}
