@@ -178,7 +178,11 @@ func (m *valveModel) bind(b *binding) {
 
 // begin opens the edges that the direction asks for.
 func (m *valveModel) begin(s *step) {
+	was := m.now
 	m.position(s)
+	if m.dir == m.was && m.now == was { // all stands as it is
+		return
+	}
 	m.branch = [4]branch{}
 	pick := func(i int, a, b slot, t throat, edge int) { m.branch[i] = branch{a, b, t, edge, true} }
 	switch {
@@ -301,6 +305,9 @@ func (m *valveModel) eval(e *eval) {
 		// Off the centre the row is a flow, q = u·√…, so that closing the valve is no singular case.
 		full, slope := br.t.flow(e.val(br.a) - e.val(br.b))
 		e.add(q, v-u*full)
+		if e.plain() {
+			continue
+		}
 		e.d(q, q, 1)
 		e.d(q, br.a, -u*slope)
 		e.d(q, br.b, u*slope)

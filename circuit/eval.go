@@ -60,12 +60,15 @@ func (e *eval) d(r, c slot, v float64) {
 	}
 }
 
+// plain reports that no slopes are wanted: blocks spare themselves those.
+func (e *eval) plain() bool { return e.slopes == nil }
+
 // branch adds the flow unknown q from node a to node b.
 func (e *eval) branch(a, b, q slot) float64 {
 	v := e.val(q)
 	e.add(a, v)
 	e.add(b, -v)
-	if e.slopes != nil {
+	if !e.plain() {
 		e.d(a, q, 1)
 		e.d(b, q, -1)
 	}
@@ -76,7 +79,7 @@ func (e *eval) branch(a, b, q slot) float64 {
 // where r and its slope dr are the pressure drop at q.
 func (e *eval) drop(a, b, q slot, r, dr float64) {
 	e.add(q, r+minResistance*e.val(q)-(e.val(a)-e.val(b)))
-	if e.slopes != nil {
+	if !e.plain() {
 		e.d(q, q, dr+minResistance)
 		e.d(q, a, -1)
 		e.d(q, b, 1)
@@ -88,7 +91,7 @@ func (e *eval) conduct(a, b slot, k float64) float64 {
 	q := k * (e.val(a) - e.val(b))
 	e.add(a, q)
 	e.add(b, -q)
-	if e.slopes != nil {
+	if !e.plain() {
 		e.d(a, a, k)
 		e.d(a, b, -k)
 		e.d(b, a, -k)
@@ -99,7 +102,7 @@ func (e *eval) conduct(a, b slot, k float64) float64 {
 
 // hot is what every step of a run needs, sorted out once.
 type hot struct {
-	leaky      []slot // node unknowns with a leak to tank
+	found      []foundNode
 	free       []shaft
 	gears      []*gearboxModel
 	onShafts   []shaftBooker
@@ -108,6 +111,13 @@ type hot struct {
 	forces     []force
 	solved     float64 // instant of the last balance [s]
 	asked      []asked // by axis, of the last balance
+}
+
+// foundNode is an oil node whose pressure is an unknown: it has a leak to tank and may
+// come to rest on the pressure floor.
+type foundNode struct {
+	node int
+	slot slot
 }
 
 // force is a force row and what one unit of it stands for [N].
@@ -134,9 +144,9 @@ func (r *run) moved() bool {
 // sort fills hot, once the models are bound.
 func (r *run) sort() {
 	r.asked = make([]asked, len(r.axes))
-	for _, n := range r.nodes {
+	for i, n := range r.nodes {
 		if n.slot >= 0 && !n.pilot {
-			r.leaky = append(r.leaky, n.slot)
+			r.found = append(r.found, foundNode{i, n.slot})
 		}
 	}
 	for _, s := range r.shafts {
@@ -170,9 +180,11 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	e := &r.ev
 	e.slopes = j
 	clear(e.rows)
-	for _, n := range r.leaky {
-		p, k := e.val(n), r.step.restK[n]
-		e.add(n, leak*p+k*(p-r.step.rest[n]))
+	x, g, rest, restK := e.all[e.known:], e.rows[e.known:], r.step.rest, r.step.restK
+	for _, at := range r.found {
+		n := at.slot
+		p, k := x[n], restK[n]
+		g[n] += leak*p + k*(p-rest[n])
 		e.d(n, n, leak+k)
 	}
 	for i := range r.free {

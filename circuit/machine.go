@@ -127,11 +127,13 @@ func (m *machine) evalMachine(e *eval) {
 	set, w := e.val(m.e), e.val(m.speed)
 	q := set * w * m.d // ideal flow, S to P
 	e.add(m.S, q)
-	e.d(m.S, m.e, w*m.d)
-	e.d(m.S, m.speed, set*m.d)
 	e.add(m.P, -q)
-	e.d(m.P, m.e, -w*m.d)
-	e.d(m.P, m.speed, -set*m.d)
+	if !e.plain() {
+		e.d(m.S, m.e, w*m.d)
+		e.d(m.S, m.speed, set*m.d)
+		e.d(m.P, m.e, -w*m.d)
+		e.d(m.P, m.speed, -set*m.d)
+	}
 	if m.across > 0 {
 		e.conduct(m.P, m.S, m.across)
 	}
@@ -161,6 +163,9 @@ func (m *machine) torque(e *eval) torque {
 // addTorque adds k times a torque of the machine to a row.
 func (m *machine) addTorque(e *eval, row slot, k float64, t torque) {
 	e.add(row, k*t.need)
+	if e.plain() {
+		return
+	}
 	e.d(row, m.e, k*t.e)
 	e.d(row, m.speed, k*t.w)
 	e.d(row, m.P, k*t.p)

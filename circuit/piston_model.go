@@ -177,9 +177,7 @@ func (m *pistonModel) begin(s *step) {
 func (m *pistonModel) eval(e *eval) {
 	v := e.val(m.v)
 	e.add(m.pA, v)
-	e.d(m.pA, m.v, 1)
 	e.add(m.pB, -m.ratio*v)
-	e.d(m.pB, m.v, -m.ratio)
 	if m.kl1 > 0 {
 		e.conduct(m.pA, m.pB, m.kl1)
 	}
@@ -187,14 +185,20 @@ func (m *pistonModel) eval(e *eval) {
 		return
 	}
 	pA, pB, sg := e.val(m.pA), e.val(m.pB), e.val(m.sigma)
-	dry, slope := m.fc1+m.kp1*math.Abs(pA-pB), m.kp1*sign(pA-pB)
+	dry := m.fc1 + m.kp1*math.Abs(pA-pB)
 	e.add(m.v, m.load+sg*dry+m.visc1*v-pA+m.ratio*pB)
+	// σ sits at 1 while v > 0, at −1 while v < 0, and anywhere between at v = 0.
+	e.add(m.sigma, -v*m.steep+sg*m.rests)
+	if e.plain() {
+		return
+	}
+	slope := m.kp1 * sign(pA-pB)
+	e.d(m.pA, m.v, 1)
+	e.d(m.pB, m.v, -m.ratio)
 	e.d(m.v, m.v, m.visc1)
 	e.d(m.v, m.pA, -1+sg*slope)
 	e.d(m.v, m.pB, m.ratio-sg*slope)
 	e.d(m.v, m.sigma, dry)
-	// σ sits at 1 while v > 0, at −1 while v < 0, and anywhere between at v = 0.
-	e.add(m.sigma, -v*m.steep+sg*m.rests)
 	e.d(m.sigma, m.v, -m.steep)
 	e.d(m.sigma, m.sigma, m.rests)
 }

@@ -234,7 +234,8 @@ func (r *run) begin(k int, share float64) {
 	s.next = r.next(k, share)
 	for i := range s.axes {
 		a, d := &s.axes[i], &r.series.Axes[i]
-		*a = axisStep{given: d.Given, standing: d.Standing[k], travel: r.state.travel[i], before: r.state.speed[i]}
+		*a = axisStep{}
+		a.given, a.standing, a.travel, a.before = d.Given, d.Standing[k], r.state.travel[i], r.state.speed[i]
 		a.load, a.command, a.demand = between(d.Load, k, share), between(d.Command, k, share), between(d.Speed, k, share)
 		if d.Accel != nil {
 			a.accel = d.Accel[k]
@@ -248,7 +249,7 @@ func (r *run) begin(k int, share float64) {
 			a.flow += r.slip[i] * math.Abs(a.load) / r.volumes[i] / r.scales.q
 		}
 		s.standing = s.standing && a.standing
-		if m := r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad {
+		if m := &r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad {
 			s.x[m.speed] = a.scaledDemand
 			if !a.standing { // else the active set must first find out which way it rubs
 				s.x[m.sigma] = sign(a.scaledDemand)
@@ -306,11 +307,9 @@ func (r *run) certify(k int, res balance.Result) {
 		c.Fallbacks++
 	}
 	if !res.Solved() || res.Norm*r.scales.q > c.Worst { // no row is worse than all together
-		for i := range r.rows {
-			if r.rows[i].kind == flowRow {
-				if q := math.Abs(r.solver.Residual(i)) * r.scales.q; q > c.Worst {
-					c.Worst, c.WorstAt = q, r.rows[i].where
-				}
+		for _, n := range r.found {
+			if q := math.Abs(r.solver.Residual(int(n.slot))) * r.scales.q; q > c.Worst {
+				c.Worst, c.WorstAt = q, r.rows[n.slot].where
 			}
 		}
 	}
@@ -366,8 +365,9 @@ func (r *run) bookAll() {
 	for _, c := range r.converters {
 		c.bookSupply(b)
 	}
+	sig, all, unit := b.sig, b.all, b.scales.p
 	for _, p := range r.portP {
-		b.sig[p.signal] = b.pa(p.node)
+		sig[p.signal] = all[p.node+b.known] * unit
 	}
 	copy(b.next, r.state.slow)
 	for _, s := range r.slowly {
@@ -384,14 +384,13 @@ func (r *run) report(k int, unbalanced bool) {
 
 // voids finds what is missing at nodes that rest on the floor.
 func (r *run) voids(b *booking) {
-	for i := range r.nodes {
-		r.sample.Void[i] = 0
-		n := &r.nodes[i]
-		if n.slot < 0 || n.pilot || b.val(n.slot) > r.solver.Lo[n.slot]+1e-9 {
+	for _, n := range r.found {
+		r.sample.Void[n.node] = 0
+		if b.val(n.slot) > r.solver.Lo[n.slot]+1e-9 {
 			continue
 		}
 		q := b.m3s(max(0, r.solver.Row(int(n.slot))))
-		r.sample.Void[i] = q
+		r.sample.Void[n.node] = q
 		b.pow[r.Compiled.void] += -floorPressure * q
 	}
 }

@@ -81,10 +81,11 @@ func (s *Solver) norm(p Problem, x []float64, a aim, slopes bool) float64 {
 
 // residual is the min/max form. It also notes which unknowns rest on a bound.
 func (s *Solver) residual(x []float64) {
-	n := len(s.g)
+	g := s.g
+	n := len(g)
 	x, lo, hi, weight, out := x[:n], s.Lo[:n], s.Hi[:n], s.Weight[:n], s.r[:n]
 	word := uint64(0)
-	for i, r := range s.g {
+	for i, r := range g {
 		w, l, h := weight[i], x[i]-lo[i], x[i]-hi[i]
 		if dl, dh := w*l, w*h; !(dl >= r && dh <= r && l != h) { // most unknowns lie between their bounds
 			if dl < r || l == h {

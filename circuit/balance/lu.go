@@ -6,14 +6,15 @@ import "math"
 // matrix, in place and without allocation. Circuits of tens of unknowns are
 // too small for a general library to win.
 type lu struct {
-	n   int
+	n   int       // may be made smaller
 	a   []float64 // n×n, row-major
 	row []int
 	inv []float64 // 1/row scale
+	out []float64 // room for a solution
 }
 
 func newLU(n int) *lu {
-	return &lu{n: n, a: make([]float64, n*n), row: make([]int, n), inv: make([]float64, n)}
+	return &lu{n: n, a: make([]float64, n*n), row: make([]int, n), inv: make([]float64, n), out: make([]float64, n)}
 }
 
 // factor factors lu.a and returns the smallest pivot of the equilibrated

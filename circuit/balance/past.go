@@ -4,7 +4,7 @@ package balance
 // parabola, up to mostOrder) that would have foretold the last one best. It is a start
 // for Newton's method, nothing else: a poor one costs a step, never a result.
 type past struct {
-	x     [mostOrder + 2][]float64 // last first; one more than a start needs, to judge it
+	x     [mostOrder + 3][]float64 // last first; two more than a start needs, to judge it
 	count int
 	order int
 }
@@ -56,8 +56,8 @@ func (p *past) guess(x, lo, hi []float64) bool {
 // keep takes a solution. At every sixteenth, and when the last start was poor, it finds
 // the order for the next.
 func (p *past) keep(x []float64, poor bool) {
-	oldest := p.x[mostOrder+1]
-	copy(p.x[1:], p.x[:mostOrder+1])
+	oldest := p.x[len(p.x)-1]
+	copy(p.x[1:], p.x[:len(p.x)-1])
 	p.x[0] = oldest
 	copy(oldest, x)
 	if p.count++; p.count > 2 && (poor || p.count&15 == 0) {
@@ -65,29 +65,30 @@ func (p *past) keep(x []float64, poor bool) {
 	}
 }
 
-// choose takes the lowest order that would have missed the last solution by much less
-// than those below it. What order k has missed is the difference of k+2 solutions.
+// choose takes the lowest order that would have missed the last two solutions by much
+// less than those below it: two, for noise may meet one by chance. What order k has
+// missed is the difference of k+2 solutions.
 func (p *past) choose() {
 	n := len(p.x[0])
 	x0, x1, x2, x3 := p.x[0], p.x[1][:n], p.x[2][:n], p.x[3][:n]
-	x4, x5, x6 := p.x[4][:n], p.x[5][:n], p.x[6][:n]
+	x4, x5, x6, x7 := p.x[4][:n], p.x[5][:n], p.x[6][:n], p.x[7][:n]
 	var missed [mostOrder + 1]float64
 	for i, v := range x0 {
-		a, b, c, d, e, f := v-x1[i], x1[i]-x2[i], x2[i]-x3[i], x3[i]-x4[i], x4[i]-x5[i], x5[i]-x6[i]
-		missed[0] += a * a
+		a, b, c, d, e, f, g := v-x1[i], x1[i]-x2[i], x2[i]-x3[i], x3[i]-x4[i], x4[i]-x5[i], x5[i]-x6[i], x6[i]-x7[i]
+		missed[0] += a*a + b*b
+		a, b, c, d, e, f = a-b, b-c, c-d, d-e, e-f, f-g
+		missed[1] += a*a + b*b
 		a, b, c, d, e = a-b, b-c, c-d, d-e, e-f
-		missed[1] += a * a
+		missed[2] += a*a + b*b
 		a, b, c, d = a-b, b-c, c-d, d-e
-		missed[2] += a * a
+		missed[3] += a*a + b*b
 		a, b, c = a-b, b-c, c-d
-		missed[3] += a * a
+		missed[4] += a*a + b*b
 		a, b = a-b, b-c
-		missed[4] += a * a
-		a -= b
-		missed[5] += a * a
+		missed[5] += a*a + b*b
 	}
 	p.order = 0
-	for k := 1; k <= mostOrder && k < p.count-1; k++ {
+	for k := 1; k <= mostOrder && k < p.count-2; k++ {
 		if missed[k] < 0.1*missed[p.order] {
 			p.order = k
 		}

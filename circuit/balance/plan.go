@@ -79,6 +79,9 @@ func each(set []uint64, f func(i int)) {
 func (w *planner) make(j *Slopes, key []uint64) *plan {
 	p := &plan{key: append([]uint64(nil), key...), entries: len(j.val)}
 	w.load(j, p)
+	n := len(w.rows)
+	p.least, p.factor = make([]float64, 0, n), make([]int32, 0, 8*n)
+	p.forward, p.back = make([]int32, 0, 4*n), make([]int32, 0, 8*n)
 	for len(w.rows) > 0 {
 		r, c := w.choose()
 		if r < 0 {
@@ -239,7 +242,7 @@ func (p *plan) run(val, work []float64) bool {
 	ops, least := p.factor, p.least
 	for len(ops) >= 2 && len(least) > 0 {
 		v := work[ops[0]]
-		if !(math.Abs(v) >= least[0]) {
+		if l := least[0]; !(v >= l || v <= -l) {
 			return false
 		}
 		v = 1 / v

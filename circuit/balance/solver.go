@@ -71,6 +71,8 @@ type Solver struct {
 	rows, g         []float64 // g is the end of rows
 	r, dx, xt, best []float64
 	start, anchor   []float64
+	rim, steep      []float64 // of a dense step: weights of bound and G in each row
+	place, free     []int32   // and where an unknown is in it, −1 on a bound; which are in it
 	hist            [5]float64
 	now             point
 	plans           plans
@@ -88,9 +90,10 @@ type point struct {
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
 	s := &Solver{n: n, f: newLU(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
-	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor} {
+	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.rim, &s.steep} {
 		*p = make([]float64, n)
 	}
+	s.place, s.free = make([]int32, n), make([]int32, 0, n)
 	s.Border(0)
 	for i := 0; i < n; i++ {
 		s.Lo[i], s.Hi[i], s.Weight[i] = math.Inf(-1), math.Inf(1), 1
