@@ -22,8 +22,8 @@
 // on the entries that the slopes have (plan.go, slopes.go). Numbers known in advance
 // stand before the unknowns (Border), so that the problem never asks which is which.
 // Where a plan does not serve, the dense factors of the unknowns off their bounds do;
-// that, and finding plans, is what a change of direction costs. Nothing is allocated
-// once the plans are made.
+// that, and finding plans, is what a change of direction costs. Only plans are allocated
+// on the way.
 //
 // Sources: Facchinei and Pang, Finite-Dimensional Variational Inequalities and
 // Complementarity Problems, Springer 2003, ch. 8-9; Billups, Algorithms for
