@@ -54,9 +54,12 @@ func (m *compensatorModel) eval(e *eval) {
 	q := e.branch(m.P, m.A, m.q)
 	r, dr := m.t.at(q)
 	e.drop(m.P, m.A, m.q, r+e.val(m.z), dr)
-	e.d(m.q, m.z, 1)
 	// More throttling lowers pA: the row rises with z.
 	e.add(m.z, m.held-(e.val(m.A)-e.val(m.ls)))
+	if e.plain() {
+		return
+	}
+	e.d(m.q, m.z, 1)
 	e.d(m.z, m.A, -1)
 	e.d(m.z, m.ls, 1)
 }

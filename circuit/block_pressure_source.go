@@ -32,9 +32,9 @@ func (m *sourceModel) bind(b *binding) { m.reference = b.p[m.p] / b.scales.p }
 func (m *sourceModel) begin(s *step)   { s.set(m.node, m.reference) }
 func (m *sourceModel) eval(*eval)      {}
 
-// book: gfix is the flow that leaves the node into the other blocks.
+// book: its row is the flow that leaves the node into the other blocks.
 func (m *sourceModel) book(k *booking) {
-	in := -k.gfix[-1-m.node]
+	in := -k.row(m.node)
 	k.put(m.q, k.m3s(in))
 	k.pow[m.stored] += k.watts(m.reference * in)
 }

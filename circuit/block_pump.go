@@ -1,8 +1,6 @@
 package circuit
 
 import (
-	"math"
-
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
 )
@@ -219,7 +217,7 @@ func (m *pumpModel) begin(s *step) {
 		if c, ok := s.command(m.id, duty.Command); ok {
 			v = c
 		}
-		m.take(s, math.Max(m.eMin, v))
+		m.take(s, max(m.eMin, v))
 	case holdsPressureFlow:
 		m.pressureFlow(s)
 	case holdsPressure, sensesLoad, sensesFlow:
@@ -239,7 +237,7 @@ func (m *pumpModel) follow(s *step) {
 	m.dir = m.polarity.sign(a)
 	switch {
 	case a.given != duty.MotionLoad:
-		m.take(s, math.Max(m.eMin, m.dir*a.command))
+		m.take(s, max(m.eMin, m.dir*a.command))
 	case a.standing && m.hold != "pump":
 		s.set(m.e, 0)
 	default:
@@ -260,7 +258,7 @@ func (m *pumpModel) take(s *step, v float64) {
 	if v < 0 {
 		m.way = -1
 	}
-	s.bounds(m.e, math.Min(0, v), math.Max(0, v))
+	s.bounds(m.e, min(0, v), max(0, v))
 }
 
 // pressureFlow takes set pressure and set flow, from tracks where the duty has them.
@@ -276,7 +274,7 @@ func (m *pumpModel) pressureFlow(s *step) {
 	if s.unloaded() && m.atRest {
 		m.goal = m.unloadedAt
 	}
-	s.bounds(m.e, m.eMin, math.Max(m.eMin, math.Min(1, q/m.full)))
+	s.bounds(m.e, m.eMin, max(m.eMin, min(1, q/m.full)))
 }
 
 func (m *pumpModel) eval(e *eval) {
@@ -310,7 +308,7 @@ func (m *pumpModel) wants(e *eval) (row float64, holds bool) {
 	case m.ctl == holdsPressure, m.ctl == holdsPressureFlow:
 		return e.val(m.P) - m.goal, true
 	case m.ctl == sensesLoad:
-		return e.val(m.P) - math.Max(e.val(m.ls), 0) - m.goal, true
+		return e.val(m.P) - max(e.val(m.ls), 0) - m.goal, true
 	case m.ctl == sensesFlow:
 		return e.val(m.e) - 1 + m.fall*(e.val(m.ls)-m.from), true
 	}

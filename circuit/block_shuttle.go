@@ -1,8 +1,6 @@
 package circuit
 
-import (
-	"math"
-)
+import ()
 
 // shuttleKind selects the higher of two pilot signals.
 var shuttleKind = &Kind{
@@ -36,7 +34,7 @@ func (m *shuttleModel) eval(e *eval) {
 	if e.val(m.y) > e.val(m.x) {
 		from = m.y
 	}
-	e.add(m.a, e.val(m.a)-math.Max(e.val(m.x), e.val(m.y)))
+	e.add(m.a, e.val(m.a)-max(e.val(m.x), e.val(m.y)))
 	e.d(m.a, m.a, 1)
 	e.d(m.a, from, -1)
 }

@@ -187,7 +187,11 @@ func (m *valveModel) bind(b *binding) {
 
 // begin opens the edges that the direction asks for.
 func (m *valveModel) begin(s *step) {
+	was := m.now
 	m.position(s)
+	if m.dir == m.was && m.now == was { // all stands as it is
+		return
+	}
 	m.branch = [4]branch{}
 	pick := func(i int, a, b slot, t throat, edge int) { m.branch[i] = branch{a, b, t, edge, true} }
 	switch {
@@ -253,7 +257,7 @@ func (m *valveModel) position(s *step) {
 	if m.given != duty.MotionLoad {
 		want = a.command
 		if !m.directs {
-			m.u = math.Max(math.Abs(want), duty.StandstillShare)
+			m.u = max(math.Abs(want), duty.StandstillShare)
 		}
 	}
 	m.dir = sign(want) * m.polarity.fixed()
@@ -264,7 +268,7 @@ func (m *valveModel) position(s *step) {
 func (m *valveModel) start(s *step, x []float64) {
 	for i, q := range m.q {
 		if q >= 0 && m.branch[i].on {
-			x[q] = math.Min(0.05, math.Abs(m.wanted)+1e-3)
+			x[q] = min(0.05, math.Abs(m.wanted)+1e-3)
 			if m.now {
 				x[q] = m.flow
 			}
@@ -295,8 +299,8 @@ func (m *valveModel) opening(e *eval) float64 {
 
 func (m *valveModel) eval(e *eval) {
 	u := m.opening(e)
-	for i, br := range m.branch {
-		q := m.q[i]
+	for i, q := range m.q {
+		br := &m.branch[i]
 		if q < 0 {
 			continue
 		}
@@ -321,6 +325,9 @@ func (m *valveModel) eval(e *eval) {
 			of = m.open
 		}
 		e.add(q, v-u*full)
+		if e.plain() {
+			continue
+		}
 		e.d(q, q, 1)
 		e.d(q, br.a, -u*slope)
 		e.d(q, br.b, u*slope)
@@ -361,7 +368,8 @@ func (m *valveModel) loadPort() slot {
 
 func (m *valveModel) book(k *booking) {
 	var q [4]float64 // into P A B T
-	for i, br := range m.branch {
+	for i := range m.branch {
+		br := &m.branch[i]
 		if m.q[i] < 0 || !br.on {
 			continue
 		}

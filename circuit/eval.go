@@ -35,45 +35,43 @@ const (
 // length) from trading an undetermined flow: 1e-10 of 100 bar at full flow.
 const minResistance = 1e-10
 
-// eval is one evaluation of all rows. Blocks read with val and add with flow, g and d.
+// eval is one evaluation of all rows. Blocks read with val and add with add and d.
+// Known numbers lie before the unknowns in the same vectors, so that no block and no
+// line below asks which of the two a slot is.
 type eval struct {
-	x, fix []float64
-	g      []float64
-	gfix   []float64 // flow leaving the fixed nodes
-	slopes *balance.Slopes
-	skip   slot // < 0 where no slopes are wanted
+	all    []float64 // known numbers, then unknowns
+	rows   []float64 // what leaves the known nodes, then the rows
+	known  slot
+	slopes *balance.Slopes // nil where no slopes are wanted
 }
 
-func (e *eval) val(s slot) float64 {
-	if s >= 0 {
-		return e.x[s]
-	}
-	return e.fix[-1-s]
-}
+func (e *eval) val(s slot) float64 { return e.all[s+e.known] }
+
+// row returns the row of s: of a known node, the flow that leaves it.
+func (e *eval) row(s slot) float64 { return e.rows[s+e.known] }
 
 // add adds v to the row of s.
-func (e *eval) add(s slot, v float64) {
-	if s >= 0 {
-		e.g[s] += v
-	} else {
-		e.gfix[-1-s] += v
-	}
-}
+func (e *eval) add(s slot, v float64) { e.rows[s+e.known] += v }
 
 // d adds the derivative of row r by unknown c.
 func (e *eval) d(r, c slot, v float64) {
-	if r|c|e.skip >= 0 {
+	if e.slopes != nil {
 		e.slopes.Add(int(r), int(c), v)
 	}
 }
+
+// plain reports that no slopes are wanted: blocks spare themselves those.
+func (e *eval) plain() bool { return e.slopes == nil }
 
 // branch adds the flow unknown q from node a to node b.
 func (e *eval) branch(a, b, q slot) float64 {
 	v := e.val(q)
 	e.add(a, v)
-	e.d(a, q, 1)
 	e.add(b, -v)
-	e.d(b, q, -1)
+	if !e.plain() {
+		e.d(a, q, 1)
+		e.d(b, q, -1)
+	}
 	return v
 }
 
@@ -81,34 +79,51 @@ func (e *eval) branch(a, b, q slot) float64 {
 // where r and its slope dr are the pressure drop at q.
 func (e *eval) drop(a, b, q slot, r, dr float64) {
 	e.add(q, r+minResistance*e.val(q)-(e.val(a)-e.val(b)))
-	e.d(q, q, dr+minResistance)
-	e.d(q, a, -1)
-	e.d(q, b, 1)
+	if !e.plain() {
+		e.d(q, q, dr+minResistance)
+		e.d(q, a, -1)
+		e.d(q, b, 1)
+	}
 }
 
 // conduct adds the linear flow k·(pa − pb) from a to b and returns it.
 func (e *eval) conduct(a, b slot, k float64) float64 {
 	q := k * (e.val(a) - e.val(b))
 	e.add(a, q)
-	e.d(a, a, k)
-	e.d(a, b, -k)
 	e.add(b, -q)
-	e.d(b, a, -k)
-	e.d(b, b, k)
+	if !e.plain() {
+		e.d(a, a, k)
+		e.d(a, b, -k)
+		e.d(b, a, -k)
+		e.d(b, b, k)
+	}
 	return q
 }
 
 // hot is what every step of a run needs, sorted out once.
 type hot struct {
-	leaky      []slot // node unknowns with a leak to tank
+	found      []foundNode
 	free       []shaft
 	gears      []*gearboxModel
 	onShafts   []shaftBooker
 	converters []*converterModel
 	slowly     []slowModel
-	topForce   float64 // most that a unit of a force row stands for [N]
+	forces     []force
 	solved     float64 // instant of the last balance [s]
 	asked      []asked // by axis, of the last balance
+}
+
+// foundNode is an oil node whose pressure is an unknown: it has a leak to tank and may
+// come to rest on the pressure floor.
+type foundNode struct {
+	node int
+	slot slot
+}
+
+// force is a force row and what one unit of it stands for [N].
+type force struct {
+	row  int
+	unit float64
 }
 
 // asked is what is asked of an axis.
@@ -129,9 +144,9 @@ func (r *run) moved() bool {
 // sort fills hot, once the models are bound.
 func (r *run) sort() {
 	r.asked = make([]asked, len(r.axes))
-	for _, n := range r.nodes {
+	for i, n := range r.nodes {
 		if n.slot >= 0 && !n.pilot {
-			r.leaky = append(r.leaky, n.slot)
+			r.found = append(r.found, foundNode{i, n.slot})
 		}
 	}
 	for _, s := range r.shafts {
@@ -141,7 +156,7 @@ func (r *run) sort() {
 	}
 	for i := range r.rows {
 		if row := &r.rows[i]; row.kind == forceRow {
-			r.topForce = math.Max(r.topForce, r.forceUnit(row))
+			r.forces = append(r.forces, force{i, r.forceUnit(row)})
 		}
 	}
 	for _, m := range r.models {
@@ -160,17 +175,16 @@ func (r *run) sort() {
 	}
 }
 
-// Eval adds all rows: it is the balance.Problem.
-func (r *run) Eval(x, g []float64, j *balance.Slopes) {
+// Eval adds all rows: it is the balance.Problem. Unknowns and rows are those of r.ev.
+func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	e := &r.ev
-	e.x, e.g, e.slopes, e.skip = x, g, j, 0
-	if j == nil {
-		e.skip = -1
-	}
-	clear(e.gfix)
-	for _, n := range r.leaky {
-		k := r.step.restK[n]
-		g[n] += leak*x[n] + k*(x[n]-r.step.rest[n])
+	e.slopes = j
+	clear(e.rows)
+	x, g, rest, restK := e.all[e.known:], e.rows[e.known:], r.step.rest, r.step.restK
+	for _, at := range r.found {
+		n := at.slot
+		p, k := x[n], restK[n]
+		g[n] += leak*p + k*(p-rest[n])
 		e.d(n, n, leak+k)
 	}
 	for i := range r.free {
@@ -187,7 +201,13 @@ func (r *run) Eval(x, g []float64, j *balance.Slopes) {
 // throat is a turbulent restriction, scaled: drop = q·√(q²+ql²)/k², laminar below
 // ql, so that its slope at zero flow is finite. ql is the flow at 1e-6 bar: at
 // 0.01 bar the flow is 2.5e-5 below that of the square-root law.
-type throat struct{ k2, ql2 float64 }
+type throat struct {
+	k2, ql2 float64
+	perK2   float64 // 1/k², 0 of an ideal opening
+}
+
+// laminar is ql²/k², twice the drop at which a throat turns from laminar to turbulent.
+const laminar = 1e-8
 
 // throatOf makes a throat from a nominal point: qN at dpN, both scaled. Without a
 // drop, or without flow limit, it is an ideal opening.
@@ -196,24 +216,27 @@ func throatOf(qN, dpN float64) throat {
 		return throat{k2: math.Inf(1)}
 	}
 	k2 := qN * qN / dpN
-	return throat{k2, 1e-8 * k2}
+	return throat{k2, laminar * k2, 1 / k2}
 }
 
 // at returns the drop at flow q of the fully open throat and its slope.
-func (t throat) at(q float64) (r, dr float64) {
-	h := math.Sqrt(q*q + t.ql2)
-	if h == 0 || math.IsInf(t.k2, 1) {
+func (t *throat) at(q float64) (r, dr float64) {
+	if t.perK2 == 0 {
 		return 0, 0
 	}
-	return q * h / t.k2, (h + q*q/h) / t.k2
+	h := math.Sqrt(q*q + t.ql2)
+	if h == 0 {
+		return 0, 0
+	}
+	return q * h * t.perK2, (h + q*q/h) * t.perK2
 }
 
-// flow is the inverse of at: the flow of the fully open throat at a drop, and its slope.
-func (t throat) flow(dp float64) (q, dq float64) {
-	d := t.ql2 / t.k2
-	q = dp * math.Sqrt(2*t.k2/(math.Sqrt(d*d+4*dp*dp)+d))
-	h := math.Sqrt(q*q + t.ql2)
-	return q, t.k2 / (h + q*q/h)
+// flow is the inverse of at: the flow of the fully open throat at a drop, and its
+// slope. With s = √(d² + 4Δp²), d = ql²/k², it is q²+ql² = h² = k²(s + d)/2.
+func (t *throat) flow(dp float64) (q, dq float64) {
+	s := math.Sqrt(laminar*laminar + 4*dp*dp)
+	h := math.Sqrt(0.5 * t.k2 * (s + laminar))
+	return dp * t.k2 / h, h / s
 }
 
 // model is a block as the balance sees it. One model serves one run at a time.
@@ -267,7 +290,8 @@ type step struct {
 	atRest   AtRest // what the prime movers do while all stand
 	commands map[duty.Control][]float64
 	solver   *balance.Solver
-	x, fix   []float64
+	x        []float64 // the unknowns
+	now      *eval     // that hold them and the known numbers
 	rest     []float64 // by node unknown: reference pressure of the leak
 	restK    []float64 // and its conductance
 	pScale   float64
@@ -321,22 +345,15 @@ func (s *step) bounds(u slot, lo, hi float64) {
 func (s *step) set(u slot, v float64) {
 	if u >= 0 {
 		s.solver.Lo[u], s.solver.Hi[u] = v, v
-		s.x[u] = v
-	} else {
-		s.fix[-1-u] = v
 	}
+	s.now.all[u+s.now.known] = v
 }
 
-func (s *step) val(u slot) float64 {
-	if u >= 0 {
-		return s.x[u]
-	}
-	return s.fix[-1-u]
-}
+func (s *step) val(u slot) float64 { return s.now.val(u) }
 
 // booking receives what a balanced step holds.
 type booking struct {
-	eval // for val
+	eval // for val and row
 	scales
 	cond  Conditions
 	step  *step

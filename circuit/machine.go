@@ -99,7 +99,7 @@ func (s *shaft) size(p []float64) float64 {
 	d := 0.0
 	for _, i := range s.train {
 		o := &s.all.shafts[i]
-		d = math.Max(d, o.largest(p)/slower(o.way, p))
+		d = max(d, o.largest(p)/slower(o.way, p))
 	}
 	if d == 0 {
 		d = usualSize
@@ -111,7 +111,7 @@ func (s *shaft) size(p []float64) float64 {
 func (s *shaft) largest(p []float64) float64 {
 	d := 0.0
 	for _, i := range s.sizes {
-		d = math.Max(d, p[i])
+		d = max(d, p[i])
 	}
 	return d
 }

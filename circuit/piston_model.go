@@ -163,7 +163,7 @@ func (m *pistonModel) ends(s *step, a *axisStep) {
 	if m.rests > 0 {
 		m.steep = 1 / gripFlow
 	} else {
-		m.steep = 1 / math.Min(1, math.Min(m.hi, -m.lo))
+		m.steep = 1 / min(1, min(m.hi, -m.lo))
 	}
 }
 
@@ -211,7 +211,7 @@ func (m *pistonModel) govern(s *step, a *axisStep) {
 		s.bounds(m.v, m.lo, m.hi)
 		s.bounds(m.sigma, -1, 1)
 		if m.v >= 0 {
-			s.x[m.v] = math.Max(m.lo, math.Min(m.hi, s.x[m.v]))
+			s.x[m.v] = max(m.lo, min(m.hi, s.x[m.v]))
 		}
 	}
 }
@@ -219,9 +219,11 @@ func (m *pistonModel) govern(s *step, a *axisStep) {
 func (m *pistonModel) eval(e *eval) {
 	v, k := e.val(m.v), m.share // of the axis; this cylinder's part of its flow and force
 	e.add(m.pA, k*v)
-	e.d(m.pA, m.v, k)
 	e.add(m.pB, -k*m.ratio*v)
-	e.d(m.pB, m.v, -k*m.ratio)
+	if !e.plain() {
+		e.d(m.pA, m.v, k)
+		e.d(m.pB, m.v, -k*m.ratio)
+	}
 	if m.kl1 > 0 {
 		e.conduct(m.pA, m.pB, m.kl1)
 	}
@@ -229,12 +231,15 @@ func (m *pistonModel) eval(e *eval) {
 		return
 	}
 	pA, pB, sg := e.val(m.pA), e.val(m.pB), e.val(m.sigma)
-	dry, slope := m.fc1+m.kp1*math.Abs(pA-pB), m.kp1*sign(pA-pB)
+	dry := m.fc1 + m.kp1*math.Abs(pA-pB)
 	e.add(m.v, m.load+k*(sg*dry+m.visc1*v-pA+m.ratio*pB))
-	e.d(m.v, m.v, k*m.visc1)
-	e.d(m.v, m.pA, k*(-1+sg*slope))
-	e.d(m.v, m.pB, k*(m.ratio-sg*slope))
-	e.d(m.v, m.sigma, k*dry)
+	if !e.plain() {
+		slope := m.kp1 * sign(pA-pB)
+		e.d(m.v, m.v, k*m.visc1)
+		e.d(m.v, m.pA, k*(-1+sg*slope))
+		e.d(m.v, m.pB, k*(m.ratio-sg*slope))
+		e.d(m.v, m.sigma, k*dry)
+	}
 	if !m.lead {
 		return
 	}

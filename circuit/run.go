@@ -78,10 +78,9 @@ type run struct {
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
 	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
-	x, fix := make([]float64, c.n), make([]float64, c.nfix)
-	r.ev = eval{x: x, fix: fix, gfix: make([]float64, c.nfix)}
+	r.ev = eval{known: slot(c.nfix), all: make([]float64, c.nfix+c.n), rows: r.solver.Border(c.nfix)}
 	r.step = step{axes: make([]axisStep, len(c.axes)), commands: s.Commands, atRest: c.circuit.PumpAtRest, solver: r.solver,
-		x: x, fix: fix, rest: make([]float64, c.n), restK: make([]float64, c.n), pScale: r.scales.p}
+		x: r.ev.all[c.nfix:], now: &r.ev, rest: make([]float64, c.n), restK: make([]float64, c.n), pScale: r.scales.p}
 	for i := range r.rows {
 		if r.rows[i].kind == flowRow {
 			r.solver.Lo[i] = floorPressure / r.scales.p
@@ -115,7 +114,7 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 		}
 	}
 	r.sort()
-	r.book = booking{scales: r.scales, cond: cond, step: &r.step, sig: make([]float64, len(c.signals)), pow: make([]float64, len(c.channels)),
+	r.book = booking{eval: r.ev, scales: r.scales, cond: cond, step: &r.step, sig: make([]float64, len(c.signals)), pow: make([]float64, len(c.channels)),
 		shaft: make([]shaftBook, len(c.shafts)), el: make([]float64, c.electric), each: make([]float64, c.electric), elJ: make([]float64, c.electric),
 		pulse: make([]float64, len(c.channels))}
 	r.sample = Sample{Signals: r.book.sig, Power: r.book.pow, Pulse: r.book.pulse, Axes: make([]AxisNow, len(c.axes)), Void: make([]float64, len(c.nodes))}
@@ -127,7 +126,7 @@ func (c *Compiled) flowScale(p []float64) float64 {
 	const usual = 157.0 // rad/s, 1500 rpm
 	q := units.LitrePerMinute
 	for _, s := range c.shafts {
-		q = math.Max(q, s.size(p)*usual)
+		q = max(q, s.size(p)*usual)
 	}
 	return q
 }
@@ -245,18 +244,19 @@ func (r *run) begin(k int, share float64) {
 	s.t = between(func(k int) float64 { return r.series.T[k] }, k, share)
 	s.dt = 0
 	if r.state.begun {
-		s.dt = math.Max(0, s.t-r.state.lastT)
+		s.dt = max(0, s.t-r.state.lastT)
 	}
 	s.next = r.next(k, share)
 	for i := range s.axes {
 		a, d := &s.axes[i], &r.series.Axes[i]
-		*a = axisStep{given: d.Given, standing: d.Standing[k], travel: r.state.travel[i], before: r.state.speed[i]}
+		*a = axisStep{}
+		a.given, a.standing, a.travel, a.before = d.Given, d.Standing[k], r.state.travel[i], r.state.speed[i]
 		a.load, a.command, a.demand = between(d.LoadAt, k, share), between(d.CommandAt, k, share), between(d.SpeedAt, k, share)
 		if d.Accel != nil {
 			a.accel = d.Accel[k]
 		}
 		if h := r.haste; h > 1 { // at most a third of the top speed
-			a.demand *= math.Max(1, math.Min(h, r.series.Axes[i].Top/(3*math.Abs(a.demand)+1e-300)))
+			a.demand *= max(1, min(h, r.series.Axes[i].Top/(3*math.Abs(a.demand)+1e-300)))
 		}
 		a.scaledDemand = a.demand * r.volumes[i] / r.scales.q
 		a.flow = math.Abs(a.scaledDemand)
@@ -264,7 +264,7 @@ func (r *run) begin(k int, share float64) {
 			a.flow += r.slip[i] * math.Abs(a.load) / r.volumes[i] / r.scales.q
 		}
 		s.standing = s.standing && a.standing
-		if m := r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad {
+		if m := &r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad {
 			s.x[m.speed] = a.scaledDemand
 			if !a.standing { // else the active set must first find out which way it rubs
 				s.x[m.sigma] = sign(a.scaledDemand)
@@ -310,7 +310,7 @@ func (r *run) cold(level int, x []float64) {
 		}
 	}
 	for i := range x {
-		x[i] = math.Max(r.solver.Lo[i], math.Min(r.solver.Hi[i], x[i]))
+		x[i] = max(r.solver.Lo[i], min(r.solver.Hi[i], x[i]))
 	}
 }
 
@@ -321,18 +321,16 @@ func (r *run) certify(k int, res balance.Result) {
 	if res.Rung > balance.Warm && k > 0 {
 		c.Fallbacks++
 	}
-	if res.Solved() && res.Norm*r.scales.q <= c.Worst && res.Norm*r.topForce <= c.Force { // no row is worse than all together
-		return
-	}
-	for i := range r.rows {
-		left := math.Abs(r.solver.Residual(i))
-		switch r.rows[i].kind {
-		case flowRow:
-			if q := left * r.scales.q; q > c.Worst {
-				c.Worst, c.WorstAt = q, r.rows[i].where
+	if !res.Solved() || res.Norm*r.scales.q > c.Worst { // no row is worse than all together
+		for _, n := range r.found {
+			if q := math.Abs(r.solver.Residual(int(n.slot))) * r.scales.q; q > c.Worst {
+				c.Worst, c.WorstAt = q, r.rows[n.slot].where
 			}
-		case forceRow:
-			c.Force = math.Max(c.Force, left*r.forceUnit(&r.rows[i]))
+		}
+	}
+	for _, f := range r.forces {
+		if v := math.Abs(r.solver.Residual(f.row)) * f.unit; v > c.Force {
+			c.Force = v
 		}
 	}
 	if res.Solved() {
@@ -373,8 +371,6 @@ func (r *run) bookAll() {
 	clear(b.each)
 	clear(b.elJ)
 	clear(b.pulse)
-	b.eval = r.ev
-	b.eval.x = r.step.x
 	for _, m := range r.models {
 		m.book(b)
 	}
@@ -387,8 +383,9 @@ func (r *run) bookAll() {
 	for _, c := range r.converters {
 		c.bookSupply(b)
 	}
+	sig, all, unit := b.sig, b.all, b.scales.p
 	for _, p := range r.portP {
-		b.sig[p.signal] = b.pa(p.node)
+		sig[p.signal] = all[p.node+b.known] * unit
 	}
 	copy(b.next, r.state.slow)
 	for _, s := range r.slowly {
@@ -405,13 +402,13 @@ func (r *run) report(k int, unbalanced bool) {
 
 // voids finds what is missing at nodes that rest on the floor.
 func (r *run) voids(b *booking) {
-	for i, n := range r.nodes {
-		r.sample.Void[i] = 0
-		if n.slot < 0 || n.pilot || b.x[n.slot] > r.solver.Lo[n.slot]+1e-9 {
+	for _, n := range r.found {
+		r.sample.Void[n.node] = 0
+		if b.val(n.slot) > r.solver.Lo[n.slot]+1e-9 {
 			continue
 		}
-		q := b.m3s(math.Max(0, r.solver.Row(int(n.slot))))
-		r.sample.Void[i] = q
+		q := b.m3s(max(0, r.solver.Row(int(n.slot))))
+		r.sample.Void[n.node] = q
 		b.pow[r.Compiled.void] += -floorPressure * q
 	}
 }

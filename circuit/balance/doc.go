@@ -15,10 +15,15 @@
 // pseudo-transient continuation (implicit Euler on x' = −G); each from the last
 // solution and from cold starts. Which rung solved a step is reported.
 //
-// Speed: the elimination is worked out once for each set of active bounds and
-// replayed (plan.go); a last step is taken with the factors at hand; the start is
-// foretold from the solutions before (past.go). Where any of it does not serve, the
-// dense factors do.
+// Speed: most points cost two evaluations, one with slopes and one to accept the
+// step. The start is foretold from up to six solutions (past.go), so that in a smooth
+// duty one Newton step does; in a rough one a last step is taken with the factors at
+// hand. The elimination is worked out once for each set of active bounds and replayed
+// on the entries that the slopes have (plan.go, slopes.go). Numbers known in advance
+// stand before the unknowns (Border), so that the problem never asks which is which.
+// Where a plan does not serve, the dense factors of the unknowns off their bounds do;
+// that, and finding plans, is what a change of direction costs. Only plans are allocated
+// on the way.
 //
 // Sources: Facchinei and Pang, Finite-Dimensional Variational Inequalities and
 // Complementarity Problems, Springer 2003, ch. 8-9; Billups, Algorithms for

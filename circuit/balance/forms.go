@@ -66,10 +66,9 @@ func phi(u, v float64) (q, du, dv float64) {
 // residual in s.r and returns its 2-norm.
 func (s *Solver) norm(p Problem, x []float64, a aim, slopes bool) float64 {
 	if slopes {
-		s.j.eval(p, x, s.g)
+		s.j.eval(p, x, s.rows)
 	} else {
-		clear(s.g)
-		p.Eval(x, s.g, nil)
+		p.Eval(x, s.rows, nil)
 	}
 	s.now.aim, s.now.slopes = a, slopes
 	if a.smooth || a.delta > 0 {
@@ -82,21 +81,23 @@ func (s *Solver) norm(p Problem, x []float64, a aim, slopes bool) float64 {
 
 // residual is the min/max form. It also notes which unknowns rest on a bound.
 func (s *Solver) residual(x []float64) {
-	n := len(s.g)
+	g := s.g
+	n := len(g)
 	x, lo, hi, weight, out := x[:n], s.Lo[:n], s.Hi[:n], s.Weight[:n], s.r[:n]
-	sum, word := 0.0, uint64(0)
-	for i, r := range s.g {
-		l, h := x[i]-lo[i], x[i]-hi[i]
-		if d := weight[i] * l; d < r || l == h {
-			r = d
-			word |= 1 << (uint(i) & 63)
-		}
-		if d := weight[i] * h; d > r {
-			r = d
-			word |= 1 << (uint(i) & 63)
+	word := uint64(0)
+	for i, r := range g {
+		w, l, h := weight[i], x[i]-lo[i], x[i]-hi[i]
+		if dl, dh := w*l, w*h; !(dl >= r && dh <= r && l != h) { // most unknowns lie between their bounds
+			if dl < r || l == h {
+				r = dl
+				word |= 1 << (uint(i) & 63)
+			}
+			if dh > r {
+				r = dh
+				word |= 1 << (uint(i) & 63)
+			}
 		}
 		out[i] = r
-		sum += r * r
 		if i&63 == 63 {
 			s.plans.key[i>>6], word = word, 0
 		}
@@ -104,7 +105,19 @@ func (s *Solver) residual(x []float64) {
 	if n&63 != 0 {
 		s.plans.key[n>>6] = word
 	}
-	s.setNorm(sum)
+	s.setNorm(squares(out))
+}
+
+// squares is the sum of squares, in four parts that do not wait for each other.
+func squares(v []float64) float64 {
+	var a, b, c, d float64
+	for ; len(v) >= 4; v = v[4:] {
+		a, b, c, d = a+v[0]*v[0], b+v[1]*v[1], c+v[2]*v[2], d+v[3]*v[3]
+	}
+	for _, x := range v {
+		a += x * x
+	}
+	return (a + b) + (c + d)
 }
 
 func (s *Solver) smoothResidual(x []float64, a aim) {

@@ -6,14 +6,15 @@ import "math"
 // matrix, in place and without allocation. Circuits of tens of unknowns are
 // too small for a general library to win.
 type lu struct {
-	n   int
+	n   int       // may be made smaller
 	a   []float64 // n×n, row-major
 	row []int
 	inv []float64 // 1/row scale
+	out []float64 // room for a solution
 }
 
 func newLU(n int) *lu {
-	return &lu{n: n, a: make([]float64, n*n), row: make([]int, n), inv: make([]float64, n)}
+	return &lu{n: n, a: make([]float64, n*n), row: make([]int, n), inv: make([]float64, n), out: make([]float64, n)}
 }
 
 // factor factors lu.a and returns the smallest pivot of the equilibrated
@@ -21,8 +22,9 @@ func newLU(n int) *lu {
 func (f *lu) factor() float64 {
 	n, a := f.n, f.a
 	for i := 0; i < n; i++ {
+		ri := a[i*n : i*n+n]
 		m := 0.0
-		for _, v := range a[i*n : i*n+n] {
+		for _, v := range ri {
 			if v := math.Abs(v); v > m || v != v {
 				m = v
 			}
@@ -32,8 +34,8 @@ func (f *lu) factor() float64 {
 		}
 		s := 1 / m
 		f.inv[i] = s
-		for j := range a[i*n : i*n+n] {
-			a[i*n+j] *= s
+		for j := range ri {
+			ri[j] *= s
 		}
 		f.row[i] = i
 	}
@@ -59,17 +61,17 @@ func (f *lu) factor() float64 {
 			f.row[k], f.row[p] = f.row[p], f.row[k]
 		}
 		d := 1 / a[k*n+k]
-		rk := a[k*n : k*n+n]
+		rk := a[k*n+k+1 : k*n+n]
 		for i := k + 1; i < n; i++ {
 			m := a[i*n+k]
 			if m == 0 {
 				continue
 			}
 			m *= d
-			ri := a[i*n : i*n+n]
-			ri[k] = m
-			for j := k + 1; j < n; j++ {
-				ri[j] -= m * rk[j]
+			a[i*n+k] = m
+			ri := a[i*n+k+1 : i*n+n][:len(rk)]
+			for j, v := range rk {
+				ri[j] -= m * v
 			}
 		}
 	}

@@ -16,7 +16,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 	before, planned, repeated := 0.0, false, false
 	for it := 0; ; it++ {
 		tol := Tol
-		if norm > tol && norm < 1e-6 { // else the size of x cannot decide it
+		if norm > tol && norm < 1e-6 && (it > 0 || norm <= mostTol || a.loose > 0) { // else the size of x cannot decide it
 			tol = s.tol(x)
 		}
 		if a.loose > 0 {
@@ -26,7 +26,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			if norm <= tol/64 {
 				return true, it
 			}
-		} else if norm <= tol || (norm < 1e-6 && norm > before/16 && a.delta == 0 && s.rounded(p, x, a, tol)) {
+		} else if norm <= tol || (it > 0 && norm < 1e-6 && norm > before/16 && a.delta == 0 && s.rounded(p, x, a, tol)) {
 			return true, it
 		}
 		if it == maxIt || math.IsInf(norm, 1) {
@@ -58,9 +58,7 @@ func (s *Solver) again(p Problem, x []float64, norm float64) bool {
 	}
 	s.step()
 	copy(s.xt, x[:s.n])
-	for i, d := range s.dx {
-		x[i] += d
-	}
+	s.move(x, 1)
 	if s.norm(p, x, aim{}, false) < norm {
 		return true
 	}
@@ -80,6 +78,9 @@ func (s *Solver) tol(x []float64) float64 {
 	return Tol * (1 + 0.1*math.Min(m, 1e3))
 }
 
+// mostTol is the largest that tol returns.
+const mostTol = 101 * Tol
+
 // rounded reports whether the residual is within tolerance of what rounding of
 // the unknowns can leave in steep rows: rows are weighed by their largest slope,
 // from 10,000 up.
@@ -89,8 +90,8 @@ func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
 	}
 	steep := s.xt // free between steps
 	clear(steep)
-	for k, v := range s.j.val[1:] {
-		i := s.j.row[k+1]
+	for k, v := range s.j.val[firstEntry:] {
+		i := s.j.row[k+firstEntry]
 		steep[i] = max(steep[i], math.Abs(v))
 	}
 	sum := 0.0
@@ -103,39 +104,63 @@ func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
 	return math.Sqrt(sum) <= tol
 }
 
-// direction solves for the Newton step of the last evaluated point into s.dx.
-// A nearly singular matrix is met with a proximal shift, growing once.
+// direction solves for the Newton step of the last evaluated point into s.dx. Unknowns
+// whose row is their bound alone are known and drop out. A nearly singular matrix is
+// met with a proximal shift, growing once.
 func (s *Solver) direction(x []float64, a aim) bool {
-	n := s.n
+	free := s.open(x, a)
+	n := len(free)
+	f := s.f
+	f.n = n
+	b, out := s.xt[:n], f.out[:n] // s.xt is free between steps
 	for _, shift := range [...]float64{0, 1e-6, 1e-2} {
-		clear(s.f.a)
-		weight := s.xt // free between steps
-		for i := 0; i < n; i++ {
-			g := s.g[i]
-			if a.delta > 0 {
-				g += a.delta * (x[i] - s.anchor[i])
-			}
-			_, wx, wg := a.row(x[i], g, s.Lo[i], s.Hi[i], s.Weight[i])
-			weight[i] = wg
-			s.f.a[i*n+i] = wx + wg*(a.delta+shift)
+		clear(f.a[:n*n])
+		for k, i := range free {
+			b[k] = s.r[i]
+			f.a[k*n+k] = s.rim[i] + s.steep[i]*(a.delta+shift)
 		}
-		for k, v := range s.j.val[1:] {
-			if i := int(s.j.row[k+1]); weight[i] != 0 {
-				s.f.a[i*n+int(s.j.col[k+1])] += weight[i] * v
+		for e, v := range s.j.val[firstEntry:] {
+			i, c := s.j.row[e+firstEntry], s.j.col[e+firstEntry]
+			switch k, l := s.place[i], s.place[c]; {
+			case k < 0:
+			case l < 0:
+				b[k] += s.steep[i] * v * s.dx[c]
+			default:
+				f.a[int(k)*n+int(l)] += s.steep[i] * v
 			}
 		}
-		if piv := s.f.factor(); piv >= tinyPivot {
-			s.f.solve(s.r, s.dx)
-			for i := range s.dx {
-				s.dx[i] = -s.dx[i]
-				if s.dx[i] != s.dx[i] {
+		if piv := f.factor(); piv >= tinyPivot {
+			f.solve(b, out)
+			for k, i := range free {
+				if out[k] != out[k] {
 					return false
 				}
+				s.dx[i] = -out[k]
 			}
 			return true
 		}
 	}
 	return false
+}
+
+// open lists the unknowns that are not on a bound by themselves, with the weights of
+// their rows; the steps of the others it finds.
+func (s *Solver) open(x []float64, a aim) []int32 {
+	free := s.free[:0]
+	for i, g := range s.g {
+		if a.delta > 0 {
+			g += a.delta * (x[i] - s.anchor[i])
+		}
+		_, s.rim[i], s.steep[i] = a.row(x[i], g, s.Lo[i], s.Hi[i], s.Weight[i])
+		if s.steep[i] == 0 && s.rim[i] != 0 {
+			s.place[i] = -1
+			s.dx[i] = -s.r[i] / s.rim[i]
+			continue
+		}
+		s.place[i] = int32(len(free))
+		free = append(free, int32(i))
+	}
+	return free
 }
 
 // lineSearch moves x along s.dx: a full step, shortened as a whole where it
@@ -153,9 +178,7 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 	copy(s.xt, x[:s.n])
 	bestNorm, bestT := math.Inf(1), t
 	for k := 0; k <= 8; k++ {
-		for i := range s.dx {
-			x[i] = s.xt[i] + t*s.dx[i]
-		}
+		s.move(x, t)
 		norm := s.norm(p, x, a, false)
 		if norm < ref || norm == 0 {
 			return norm
@@ -175,10 +198,17 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 		}
 		t /= 2
 	}
-	for i := range s.dx {
-		x[i] = s.xt[i] + bestT*s.dx[i]
-	}
+	s.move(x, bestT)
 	return s.norm(p, x, a, true)
+}
+
+// move puts x a share of the step s.dx on from s.xt.
+func (s *Solver) move(x []float64, share float64) {
+	dx := s.dx
+	x, from := x[:len(dx)], s.xt[:len(dx)]
+	for i, d := range dx {
+		x[i] = from[i] + share*d
+	}
 }
 
 // reach is how much of the step s.dx from x may be taken at most.

@@ -1,16 +1,27 @@
 package balance
 
-// past foretells a solution from the last three, by the polynomial (constant,
-// line, parabola) that would have foretold the last one best. It is a start for
-// Newton's method, nothing else: a poor one costs a step, never a result.
+// past foretells a solution from the last ones, by the polynomial (constant, line,
+// parabola, up to mostOrder) that would have foretold the last one best. It is a start
+// for Newton's method, nothing else: a poor one costs a step, never a result.
 type past struct {
-	x     [3][]float64 // last first
+	x     [mostOrder + 3][]float64 // last first; two more than a start needs, to judge it
 	count int
 	order int
 }
 
-func newPast(n int) past {
-	return past{x: [3][]float64{make([]float64, n), make([]float64, n), make([]float64, n)}}
+const mostOrder = 5
+
+// ahead holds, by order, the shares of the last solutions in the next one: the
+// polynomial through them, one step on.
+var ahead = [mostOrder + 1][mostOrder + 1]float64{
+	{1}, {2, -1}, {3, -3, 1}, {4, -6, 4, -1}, {5, -10, 10, -5, 1}, {6, -15, 20, -15, 6, -1},
+}
+
+func newPast(n int) (p past) {
+	for k := range p.x {
+		p.x[k] = make([]float64, n)
+	}
+	return p
 }
 
 func (p *past) forget() { p.count, p.order = 0, 0 }
@@ -21,42 +32,63 @@ func (p *past) guess(x, lo, hi []float64) bool {
 	if p.order == 0 {
 		return false
 	}
-	a, b, c := p.x[0], p.x[1], p.x[2]
+	s := &ahead[p.order]
+	a := p.x[0]
+	n := len(a)
+	b, c, d, e, f := p.x[1][:n], p.x[2][:n], p.x[3][:n], p.x[4][:n], p.x[5][:n]
+	x, lo, hi = x[:n], lo[:n], hi[:n]
 	for i, v := range a {
 		if x[i] != v {
 			continue
 		}
-		if p.order == 1 {
-			v += v - b[i]
-		} else {
-			v += 2*v - 3*b[i] + c[i]
+		v = (s[0]*v + s[1]*b[i]) + (s[2]*c[i] + s[3]*d[i]) + (s[4]*e[i] + s[5]*f[i])
+		if v < lo[i] {
+			v = lo[i]
 		}
-		x[i] = max(lo[i], min(hi[i], v))
+		if v > hi[i] {
+			v = hi[i]
+		}
+		x[i] = v
 	}
 	return true
 }
 
-// keep takes a solution; at every fourth it finds the order for the next.
-func (p *past) keep(x []float64) {
-	if p.count++; p.count > 3 && p.count&3 == 0 {
-		p.choose(x)
+// keep takes a solution. At every sixteenth, and when the last start was poor, it finds
+// the order for the next.
+func (p *past) keep(x []float64, poor bool) {
+	oldest := p.x[len(p.x)-1]
+	copy(p.x[1:], p.x[:len(p.x)-1])
+	p.x[0] = oldest
+	copy(oldest, x)
+	if p.count++; p.count > 2 && (poor || p.count&15 == 0) {
+		p.choose()
 	}
-	a, b, c := p.x[0], p.x[1], p.x[2]
-	p.x[0], p.x[1], p.x[2] = c, a, b
-	copy(c, x)
 }
 
-func (p *past) choose(x []float64) {
-	a, b, c := p.x[0], p.x[1], p.x[2]
-	var missed [3]float64
-	for i, v := range a {
-		d0 := x[i] - v
-		d1 := d0 - (v - b[i])
-		d2 := d1 - (v - 2*b[i] + c[i])
-		missed[0], missed[1], missed[2] = missed[0]+d0*d0, missed[1]+d1*d1, missed[2]+d2*d2
+// choose takes the lowest order that would have missed the last two solutions by much
+// less than those below it: two, for noise may meet one by chance. What order k has
+// missed is the difference of k+2 solutions.
+func (p *past) choose() {
+	n := len(p.x[0])
+	x0, x1, x2, x3 := p.x[0], p.x[1][:n], p.x[2][:n], p.x[3][:n]
+	x4, x5, x6, x7 := p.x[4][:n], p.x[5][:n], p.x[6][:n], p.x[7][:n]
+	var missed [mostOrder + 1]float64
+	for i, v := range x0 {
+		a, b, c, d, e, f, g := v-x1[i], x1[i]-x2[i], x2[i]-x3[i], x3[i]-x4[i], x4[i]-x5[i], x5[i]-x6[i], x6[i]-x7[i]
+		missed[0] += a*a + b*b
+		a, b, c, d, e, f = a-b, b-c, c-d, d-e, e-f, f-g
+		missed[1] += a*a + b*b
+		a, b, c, d, e = a-b, b-c, c-d, d-e, e-f
+		missed[2] += a*a + b*b
+		a, b, c, d = a-b, b-c, c-d, d-e
+		missed[3] += a*a + b*b
+		a, b, c = a-b, b-c, c-d
+		missed[4] += a*a + b*b
+		a, b = a-b, b-c
+		missed[5] += a*a + b*b
 	}
 	p.order = 0
-	for k := 1; k < 3; k++ {
+	for k := 1; k <= mostOrder && k < p.count-2; k++ {
 		if missed[k] < 0.1*missed[p.order] {
 			p.order = k
 		}

@@ -3,6 +3,7 @@ package balance
 import (
 	"math"
 	"math/bits"
+	"slices"
 )
 
 // plan is an elimination worked out once for one set of active bounds and then
@@ -16,14 +17,25 @@ type plan struct {
 	entries int      // of the slopes it was made for
 	sparse  bool     // false: singular when it was made, use the dense factors
 	bad     int      // times a pivot was too small
-	src     []int32  // entries of the slopes, in the order of work
+	fixed   []int32  // the unknowns that rest on a bound
 	least   []float64
-	factor  []int32 // pivot, count of rows below; each: place, count, (target, source)...
-	forward []int32 // (place, row from, row to)...
-	back    []int32 // row, column, pivot, count, (place, column)...
-	tied    []int32 // (row, entry, column) by which known steps enter the other rows
-	size    int
+	pivots  []counted // place of a pivot, number of rows below it
+	below   []counted // rows below, pivot by pivot: place in the pivot's column, number of updates
+	updates []pair    // row by row: place, place in the pivot's row whose share it loses
+	forward []triple  // place, row from, row to
+	back    []solved  // last pivot first
+	right   []pair    // of each of these: place, column
+	tied    []triple  // row, entry, column by which known steps enter the other rows
+	size    int       // of work: the entries of the slopes, then the fill
 }
+
+type (
+	counted struct{ place, count int32 }
+	pair    struct{ a, b int32 }
+	triple  struct{ a, b, c int32 }
+	// solved is an unknown whose step is found from those of count others.
+	solved struct{ row, col, pivot, count int32 }
+)
 
 const (
 	pivotShare = 0.1  // of its column that a pivot must have when a plan is made
@@ -79,6 +91,10 @@ func each(set []uint64, f func(i int)) {
 func (w *planner) make(j *Slopes, key []uint64) *plan {
 	p := &plan{key: append([]uint64(nil), key...), entries: len(j.val)}
 	w.load(j, p)
+	n := len(w.rows)
+	p.least, p.pivots, p.below = make([]float64, 0, n), make([]counted, 0, n), make([]counted, 0, 2*n)
+	p.updates, p.forward, p.right = make([]pair, 0, 2*n), make([]triple, 0, 2*n), make([]pair, 0, 2*n)
+	p.back = make([]solved, 0, n)
 	for len(w.rows) > 0 {
 		r, c := w.choose()
 		if r < 0 {
@@ -100,24 +116,24 @@ func (w *planner) load(j *Slopes, p *plan) {
 		clear(w.inCol[i])
 		if !bit(p.key, i) {
 			w.rows, w.cols = append(w.rows, i), append(w.cols, i)
+		} else {
+			p.fixed = append(p.fixed, int32(i))
 		}
 	}
-	p.src = make([]int32, 0, len(j.val))
-	for k := 1; k < len(j.val); k++ {
+	for k := firstEntry; k < len(j.val); k++ {
 		r, c := int(j.row[k]), int(j.col[k])
 		switch {
 		case bit(p.key, r):
 		case bit(p.key, c):
-			p.tied = append(p.tied, int32(r), int32(k), int32(c))
+			p.tied = append(p.tied, triple{int32(r), int32(k), int32(c)})
 		default:
-			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(len(p.src)), j.val[k]
+			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(k), j.val[k]
 			put(w.inRow[r], c)
 			put(w.inCol[c], r)
-			p.src = append(p.src, int32(k))
 			w.scale[r] = max(w.scale[r], math.Abs(j.val[k]))
 		}
 	}
-	p.size = len(p.src)
+	p.size = len(j.val)
 	for _, r := range w.rows {
 		if w.scale[r] > 0 {
 			w.scale[r] = 1 / w.scale[r]
@@ -155,12 +171,15 @@ func (w *planner) cheapest() (r, c int) {
 	r, c = -1, -1
 	best, most := math.MaxInt, 0.0
 	for _, k := range w.cols {
+		others := size(w.inCol[k]) - 1
+		if others > best { // no row here has a single entry
+			continue
+		}
 		top := 0.0
 		each(w.inCol[k], func(i int) { top = max(top, math.Abs(w.a[i*w.n+k])*w.scale[i]) })
 		if !(top >= tinyPivot) {
 			continue
 		}
-		others := size(w.inCol[k]) - 1
 		each(w.inCol[k], func(i int) {
 			v := math.Abs(w.a[i*w.n+k]) * w.scale[i]
 			if !(v >= pivotShare*top) {
@@ -183,17 +202,18 @@ func (w *planner) eliminate(p *plan, r, c int) {
 	drop(w.inRow[r], c)
 	piv := w.slot[r*n+c]
 	p.least = append(p.least, pivotLeast*math.Abs(w.a[r*n+c]))
-	p.factor = append(p.factor, piv, int32(size(w.inCol[c])))
-	p.back = append(p.back, int32(r), int32(c), piv, int32(size(w.inRow[r])))
-	us := len(p.back)
-	each(w.inRow[r], func(k int) { p.back = append(p.back, w.slot[r*n+k], int32(k)) })
+	p.pivots = append(p.pivots, counted{piv, int32(size(w.inCol[c]))})
+	p.back = append(p.back, solved{int32(r), int32(c), piv, int32(size(w.inRow[r]))})
+	from := len(p.right)
+	each(w.inRow[r], func(k int) { p.right = append(p.right, pair{w.slot[r*n+k], int32(k)}) })
+	right := p.right[from:]
 	each(w.inCol[c], func(i int) {
 		l := w.slot[i*n+c]
-		p.forward = append(p.forward, l, int32(r), int32(i))
-		p.factor = append(p.factor, l, int32(len(p.back)-us)/2)
+		p.forward = append(p.forward, triple{l, int32(r), int32(i)})
+		p.below = append(p.below, counted{l, int32(len(right))})
 		m := w.a[i*n+c] / w.a[r*n+c]
-		for q := us; q < len(p.back); q += 2 {
-			k := int(p.back[q+1])
+		for _, u := range right {
+			k := int(u.b)
 			if !bit(w.inRow[i], k) {
 				w.slot[i*n+k], w.a[i*n+k] = int32(p.size), 0
 				p.size++
@@ -201,23 +221,21 @@ func (w *planner) eliminate(p *plan, r, c int) {
 				put(w.inCol[k], i)
 			}
 			w.a[i*n+k] -= m * w.a[r*n+k]
-			p.factor = append(p.factor, w.slot[i*n+k], p.back[q])
+			p.updates = append(p.updates, pair{w.slot[i*n+k], u.a})
 		}
 	})
 }
 
-// turn puts the records of back into the order in which they are needed: last pivot first.
+// turn puts the unknowns into the order in which they are found: last pivot first.
 func (w *planner) turn(p *plan) {
-	var starts []int
-	for i := 0; i < len(p.back); i += 4 + 2*int(p.back[i+3]) {
-		starts = append(starts, i)
+	slices.Reverse(p.back)
+	right := make([]pair, 0, len(p.right))
+	end := len(p.right)
+	for _, u := range p.back {
+		right = append(right, p.right[end-int(u.count):end]...)
+		end -= int(u.count)
 	}
-	out := make([]int32, 0, len(p.back))
-	for k := len(starts) - 1; k >= 0; k-- {
-		i := starts[k]
-		out = append(out, p.back[i:i+4+2*int(p.back[i+3])]...)
-	}
-	p.back = out
+	p.right = right
 }
 
 func without(s []int, v int) []int {
@@ -231,27 +249,25 @@ func without(s []int, v int) []int {
 
 // run factors the slopes into work. It reports false when a pivot has become too small.
 func (p *plan) run(val, work []float64) bool {
-	for i, k := range p.src {
-		work[i] = val[k]
-	}
-	clear(work[len(p.src):p.size])
-	ops := p.factor
-	for i, k := 0, 0; i < len(ops); k++ {
-		v := work[ops[i]]
-		if !(math.Abs(v) >= p.least[k]) {
+	work = work[:p.size]
+	clear(work[copy(work, val):])
+	below, updates, least := p.below, p.updates, p.least
+	for k, at := range p.pivots {
+		v := work[at.place]
+		if l := least[k]; !(v >= l || v <= -l) {
 			return false
 		}
 		v = 1 / v
-		work[ops[i]] = v
-		below := ops[i+1]
-		for i += 2; below > 0; below-- {
-			m := work[ops[i]] * v
-			work[ops[i]] = m
-			end := i + 2 + 2*int(ops[i+1])
-			for i += 2; i < end; i += 2 {
-				work[ops[i]] -= m * work[ops[i+1]]
+		work[at.place] = v
+		for _, row := range below[:at.count] {
+			m := work[row.place] * v
+			work[row.place] = m
+			for _, u := range updates[:row.count] {
+				work[u.a] -= m * work[u.b]
 			}
+			updates = updates[row.count:]
 		}
+		below = below[at.count:]
 	}
 	return true
 }
@@ -260,21 +276,20 @@ func (p *plan) run(val, work []float64) bool {
 // are there already, and with moved set they enter the other rows.
 func (p *plan) solve(val, work, b, dx []float64, moved bool) {
 	if moved {
-		for t := p.tied; len(t) >= 3; t = t[3:] {
-			b[t[0]] += val[t[1]] * dx[t[2]]
+		for _, t := range p.tied {
+			b[t.a] += val[t.b] * dx[t.c]
 		}
 	}
-	for f := p.forward; len(f) >= 3; f = f[3:] {
-		b[f[2]] -= work[f[0]] * b[f[1]]
+	for _, u := range p.forward {
+		b[u.c] -= work[u.a] * b[u.b]
 	}
-	ops := p.back
-	for i := 0; i < len(ops); {
-		sum := -b[ops[i]]
-		col, piv := ops[i+1], ops[i+2]
-		end := i + 4 + 2*int(ops[i+3])
-		for i += 4; i < end; i += 2 {
-			sum -= work[ops[i]] * dx[ops[i+1]]
+	right := p.right
+	for _, u := range p.back {
+		sum := -b[u.row]
+		for _, e := range right[:u.count] {
+			sum -= work[e.a] * dx[e.b]
 		}
-		dx[col] = sum * work[piv]
+		right = right[u.count:]
+		dx[u.col] = sum * work[u.pivot]
 	}
 }

@@ -77,25 +77,27 @@ func (s *Solver) planned(a aim) bool {
 		return false
 	}
 	s.step()
-	sum := 0.0
+	s.far = false
 	for _, d := range s.dx {
-		sum += d * d
+		if !(d*d <= maxStep*maxStep) {
+			s.far = true
+			if d != d {
+				return false
+			}
+		}
 	}
-	s.far = sum > maxStep*maxStep
-	return sum == sum
+	return true
 }
 
 // step solves with the factors of the last plan for the present residual.
 func (s *Solver) step() {
 	p := s.plans.last
 	moved := false
-	b := s.xt // free between steps
-	for i, r := range s.r {
-		b[i] = r
-		if bit(p.key, i) {
-			s.dx[i] = -r / s.Weight[i]
-			moved = moved || r != 0
-		}
+	copy(s.xt, s.r) // free between steps
+	for _, i := range p.fixed {
+		r := s.r[i]
+		s.dx[i] = -r / s.Weight[i]
+		moved = moved || r != 0
 	}
-	p.solve(s.j.val, s.plans.work, b, s.dx, moved)
+	p.solve(s.j.val, s.plans.work, s.xt, s.dx, moved)
 }

@@ -1,50 +1,82 @@
 package balance
 
 // Slopes is the Jacobian of G: a square matrix of which only the entries are
-// kept that were ever added to. Entry 0 takes what has no place yet.
+// kept that were ever added to.
 type Slopes struct {
-	n        int
-	at       []int32 // n×n: index into val, 0 = no place yet
-	val      []float64
-	row, col []int32 // of each entry
-	missed   int     // a place that is not there yet, plus one
+	n          int
+	known      int     // rows and columns before the first that count for nothing
+	at         []int32 // (known+n)²: index into val
+	side, zero int     // known+n, and the place of row 0, column 0 in it
+	val        []float64
+	row, col   []int32  // of each entry
+	missed     [100]int // places that are not there yet
+	misses     int
 }
+
+// The first entries take what has no place yet, and what counts for nothing.
+const (
+	noPlace = iota
+	noMatter
+	firstEntry
+)
 
 func newSlopes(n int) *Slopes {
-	return &Slopes{n: n, at: make([]int32, n*n), val: make([]float64, 1), row: make([]int32, 1), col: make([]int32, 1)}
+	j := &Slopes{n: n}
+	for range firstEntry {
+		j.val, j.row, j.col = append(j.val, 0), append(j.row, 0), append(j.col, 0)
+	}
+	j.border(0)
+	return j
 }
 
-// Add adds v to the derivative of row r by unknown c.
+// border makes room for known numbers, −1, −2, … −known.
+func (j *Slopes) border(known int) {
+	side := known + j.n
+	j.known, j.side, j.zero = known, side, known*side+known
+	j.at = make([]int32, side*side)
+	for i := range j.at {
+		if i/side < known || i%side < known {
+			j.at[i] = noMatter
+		}
+	}
+}
+
+// Add adds v to the derivative of row r by unknown c. Rows and columns of known
+// numbers, which are below 0, are passed over.
 func (j *Slopes) Add(r, c int, v float64) {
-	i := r*j.n + c
+	i := r*j.side + c + j.zero
+	if uint(i) >= uint(len(j.at)) { // a number that is not there
+		return
+	}
 	k := j.at[i]
-	if k == 0 {
-		j.missed = i + 1
+	if k == noPlace && j.misses < len(j.missed) {
+		j.missed[j.misses] = i
+		j.misses++
 	}
 	j.val[k] += v
 }
 
-// place makes room for the entry that was missed last and reports whether there was one.
-func (j *Slopes) place() bool {
-	if j.missed == 0 {
-		return false
-	}
-	i := j.missed - 1
-	j.missed = 0
-	j.at[i] = int32(len(j.val))
-	j.val = append(j.val, 0)
-	j.row, j.col = append(j.row, int32(i/j.n)), append(j.col, int32(i%j.n))
-	return true
-}
-
-// eval evaluates p with slopes, again and again until every entry has its place.
+// eval evaluates p with slopes, again until every entry has its place.
 func (j *Slopes) eval(p Problem, x, g []float64) {
 	for {
-		clear(g)
 		clear(j.val)
 		p.Eval(x, g, j)
-		if !j.place() {
+		if j.misses == 0 {
 			return
 		}
+		for _, i := range j.missed[:j.misses] {
+			j.place(i)
+		}
+		j.misses = 0
 	}
+}
+
+// place makes room for an entry that was missed, perhaps more than once.
+func (j *Slopes) place(i int) {
+	if j.at[i] != noPlace {
+		return
+	}
+	j.at[i] = int32(len(j.val))
+	j.val = append(j.val, 0)
+	j.row, j.col = append(j.row, int32(i/j.side-j.known)), append(j.col, int32(i%j.side-j.known))
 }

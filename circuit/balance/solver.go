@@ -2,8 +2,9 @@ package balance
 
 import "math"
 
-// Problem evaluates G and, unless j is nil, its slopes. g comes zeroed; row i
-// pairs with x[i]. Eval must not allocate and must not keep what it is given.
+// Problem evaluates G into g and, unless j is nil, adds its slopes; row i pairs with
+// x[i]. x is what Solve was given. g has a place for each known number (see Border)
+// before the rows. Eval must not allocate.
 type Problem interface {
 	Eval(x, g []float64, j *Slopes)
 }
@@ -67,9 +68,11 @@ type Solver struct {
 	n               int
 	f               *lu
 	j               *Slopes
-	g               []float64
+	rows, g         []float64 // g is the end of rows
 	r, dx, xt, best []float64
 	start, anchor   []float64
+	rim, steep      []float64 // of a dense step: weights of bound and G in each row
+	place, free     []int32   // and where an unknown is in it, −1 on a bound; which are in it
 	hist            [5]float64
 	now             point
 	plans           plans
@@ -87,13 +90,25 @@ type point struct {
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
 	s := &Solver{n: n, f: newLU(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
-	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.g, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor} {
+	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.rim, &s.steep} {
 		*p = make([]float64, n)
 	}
+	s.place, s.free = make([]int32, n), make([]int32, 0, n)
+	s.Border(0)
 	for i := 0; i < n; i++ {
 		s.Lo[i], s.Hi[i], s.Weight[i] = math.Inf(-1), math.Inf(1), 1
 	}
 	return s
+}
+
+// Border lets the problem count known numbers, from −1 down to −known, as unknowns:
+// their rows and slopes are taken and not looked at. It returns where the problem will
+// find its rows, with the known ones before them.
+func (s *Solver) Border(known int) []float64 {
+	s.j.border(known)
+	s.rows = make([]float64, known+s.n)
+	s.g = s.rows[known:]
+	return s.rows
 }
 
 // Residual evaluates the min/max residual of row i at the last evaluated point.
@@ -110,14 +125,14 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 	copy(s.start, x)
 	if s.Foretell && s.past.guess(x, s.Lo, s.Hi) {
 		if ok, it := s.newton(p, x, 5); ok {
-			s.past.keep(x)
+			s.past.keep(x, it > 2)
 			return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
 		}
 		copy(x, s.start)
 	}
 	ok, it := s.newton(p, x, 15)
 	if ok {
-		s.past.keep(x)
+		s.past.keep(x, it > 2)
 		return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
 	}
 	s.past.forget()

@@ -137,6 +137,73 @@ func TestLUAgainstLibrary(t *testing.T) {
 	}
 }
 
+// A polynomial of order k is foretold exactly by order k: its differences of order k+1
+// vanish (Newton's backward differences).
+func TestForetoldPolynomial(t *testing.T) {
+	for order := 0; order <= mostOrder; order++ {
+		f := func(t float64) float64 { return 1 + math.Pow(t/3-1, float64(order)) }
+		p := newPast(1)
+		for k := range 20 {
+			p.keep([]float64{f(float64(k))}, true)
+		}
+		p.order = max(order, 1) // a line foretells a constant too; order 0 leaves the start alone
+		x := []float64{f(19)}
+		if !p.guess(x, []float64{-inf()}, []float64{inf()}) {
+			t.Fatalf("order %d: no guess", order)
+		}
+		if want := f(20); math.Abs(x[0]-want) > 1e-11*(1+math.Abs(want)) {
+			t.Errorf("order %d foretells %.15g, the polynomial is %.15g", order, x[0], want)
+		}
+	}
+}
+
+// The order is the lowest that serves: noise is not extrapolated.
+func TestForetoldOrder(t *testing.T) {
+	smooth, noisy, state := newPast(1), newPast(1), uint64(1)
+	for k := range 200 {
+		state = state*6364136223846793005 + 1442695040888963407
+		smooth.keep([]float64{math.Sin(0.1 * float64(k))}, true)
+		noisy.keep([]float64{float64(int64(state>>11)) / float64(1<<52)}, true)
+		if k > 10 && noisy.order > 2 {
+			t.Fatalf("order %d for noise", noisy.order)
+		}
+	}
+	if smooth.order < 4 {
+		t.Errorf("order %d for a sine of 63 samples", smooth.order)
+	}
+}
+
+// bordered is x0·a = 2, x1 = x0 + b with a and b known, called −1 and −2.
+type bordered struct{ a, b float64 }
+
+func (p bordered) Eval(x, g []float64, j *Slopes) {
+	g[0], g[1] = 7, 7 // rows of known numbers are nobody's concern
+	g[2], g[3] = p.a*x[0]-2, x[1]-x[0]-p.b
+	if j == nil {
+		return
+	}
+	j.Add(0, 0, p.a)
+	j.Add(0, -1, x[0])
+	j.Add(1, 1, 1)
+	j.Add(1, 0, -1)
+	j.Add(1, -2, -1)
+	j.Add(-1, 0, 1e6)
+	j.Add(-2, -1, 1e6)
+	j.Add(1, math.MinInt32, 1e6) // a number that is not there
+}
+
+func TestBorder(t *testing.T) {
+	s := NewSolver(2)
+	s.Border(2)
+	x := []float64{0, 0}
+	if res := s.Solve(bordered{4, 3}, x, 1, func(int, []float64) {}); !res.Solved() {
+		t.Fatal(res)
+	}
+	if x[0] != 0.5 || x[1] != 3.5 {
+		t.Errorf("x = %v, want 0.5, 3.5", x)
+	}
+}
+
 // A problem without a solution must say so and name the row.
 func TestNoSolution(t *testing.T) {
 	s := NewSolver(2)
