@@ -71,6 +71,10 @@ func (l *law) values(s *Solution, p printer) string {
 	if words["ρ"] {
 		numbers = append(numbers, "ρ = "+p.in(s.Conditions.Density, units.Density, 3)+" (oil at "+p.degrees(s.Oil)+")")
 	}
+	if l.kind.Param("compression") != nil && words["ε"] {
+		oil := fluidOf(s.Conditions)
+		numbers = append(numbers, "B = "+p.in(oil.Bulk, units.Pressure, 3)+" (oil)", "α = "+units.Format(oil.Air, units.Percent, 2)+" (air in the oil)", "p0 = "+p.in(units.AtmosphericPressure, units.Pressure, 4))
+	}
 	return joined([]string{strings.Join(numbers, "; "), strings.Join(choices, "; ")})
 }
 

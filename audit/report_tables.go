@@ -11,7 +11,7 @@ import (
 type ParameterRow struct {
 	Block, Kind, Name, Symbol string
 	Value                     string // with its unit
-	Origin                    string // "measured", "default: assumed", "not stated" …
+	Origin                    string // "measured", "default: assumed", "fitted: measured", "not stated" …
 	Low, High                 string // "" when not given
 	Note                      string
 	Default                   bool // nobody typed it
@@ -55,7 +55,10 @@ func parameter(k *circuit.Kind, b *circuit.Block, p *circuit.Param) (ParameterRo
 	if row.Origin == "" {
 		row.Origin = "not stated"
 	}
-	if isDefault {
+	switch {
+	case isDefault && v.Origin == circuit.Measured:
+		row.Origin = "fitted: measured"
+	case isDefault:
 		row.Origin = "default: " + row.Origin
 	}
 	if !math.IsNaN(v.Low) {

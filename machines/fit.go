@@ -50,8 +50,11 @@ type Fit struct {
 	Warnings  []string
 }
 
-// ErrNoPoints says that there is nothing to fit.
-var ErrNoPoints = errors.New("there are fewer points than terms of the loss law")
+// Errors of FitPoints: there is nothing to fit.
+var (
+	ErrNoPoints = errors.New("there are fewer points than terms of the loss law")
+	ErrNoPower  = errors.New("no point has an overall efficiency between 0 and 1; check the columns, their units and signs")
+)
 
 // FitPoints finds the coefficients, none negative, that come closest to measured points: slip and friction each by
 // linear least squares, weighted by what they do to the overall efficiency η = Q·Δp/(T·ω) (of a motor its inverse),
@@ -69,6 +72,9 @@ func FitPoints(points []Point, opt FitOptions) (*Fit, error) {
 	}
 	if len(points) < len(termNames) {
 		return nil, ErrNoPoints
+	}
+	if !slices.ContainsFunc(points, func(p Point) bool { eta := p.Overall(); return eta > 0 && eta < 1 }) {
+		return nil, ErrNoPower
 	}
 	flow, torque := opt.problems(points)
 	xq, xt := flow.solve(), torque.solve()

@@ -1,6 +1,7 @@
 package machines
 
 import (
+	"errors"
 	"math"
 	"strings"
 	"testing"
@@ -80,6 +81,13 @@ func TestReadPointsRefusals(t *testing.T) {
 	}
 	if _, err := FitPoints(nil, FitOptions{D: 1e-5}); err == nil {
 		t.Error("a fit of no points is accepted")
+	}
+	dead := make([]Point, 12)
+	for i := range dead {
+		dead[i] = Point{W: 100, E: 1, DP: 1e7, Q: 1, T: 1} // more comes out than goes in
+	}
+	if _, err := FitPoints(dead, FitOptions{D: 1e-5, Fluid: oilOf57}); !errors.Is(err, ErrNoPower) {
+		t.Errorf("points that make energy: %v", err)
 	}
 	if !math.IsNaN(rms(nil)) {
 		t.Error("rms of nothing is a number")
