@@ -33,7 +33,15 @@ func (w *Watch) motor(b *Block, get func(string) int) motorWatch {
 	_, of := netsOf(w.c.circuit)
 	t := of[PortRef{b.ID, "E"}]
 	return motorWatch{b: b, torque: get(b.ID + ".T"), speed: get(b.ID + ".w"), current: get(b.ID + ".I"), rated: p / n, wN: n,
-		breakdown: w.value(b, "breakdown") * p / n, selfCooled: KindNamed(b.Kind).WordOf(b, "cooling") == "self", line: t == nil || len(t.ports) < 2}
+		breakdown: w.value(b, "breakdown") * p / n, selfCooled: selfCooled(b), line: t == nil || len(t.ports) < 2}
+}
+
+// selfCooled reports whether a fan on the shaft of a motor cools it; a servo motor has none unless it is said.
+func selfCooled(b *Block) bool {
+	if isServo(b) {
+		return b.Word("cooling") == "self"
+	}
+	return KindNamed(b.Kind).WordOf(b, "cooling") == "self"
 }
 
 // slowlyTurning is the share of its rated speed below which a motor counts as standing.
@@ -99,7 +107,7 @@ func (m *motorWatch) gates(w *Watch) []Gate {
 		limit := m.rated * m.cooled(0)
 		v := math.Sqrt(m.hold / m.held)
 		out = append(out, gateOf(m.b, "cooling", "holding torque at standstill", v, limit, units.Torque, m.tMax,
-			fmt.Sprintf("mean square over %s of standstill, where the copper heats; %s", clock(m.held), map[bool]string{true: "the fan on its shaft stands: half the rated torque (common practice)", false: "it has a fan of its own"}[m.selfCooled])).
+			fmt.Sprintf("mean square over %s of standstill, where the copper heats; %s", clock(m.held), map[bool]string{true: "the fan on its shaft stands: half the rated torque (common practice)", false: "no fan on its shaft is missed"}[m.selfCooled])).
 			or(Warns, fmt.Sprintf("it holds %s at standstill for %s a cycle, more than the %s it stands there for long; hold the load by a valve or brake, or cool it by a fan of its own", tor(v), clock(m.held), tor(limit))))
 	}
 	if m.current >= 0 {

@@ -57,8 +57,8 @@ func newInputs(ctx station.Context) *inputs {
 	in.origin = in.choice("payback.price.origin", "Change the origin of the price", "energy.price.origin", origins)
 	in.credit = widgets.Name(widgets.NewCheck("returned energy is paid for", in.setCredit), "payback.credit")
 	in.co2 = in.field("payback.co2", in.putCO2)
-	in.fuelPrice = in.field("payback.fuel_price", in.put("Change the price of fuel", "energy.fuel_price"))
-	in.fuelCO2 = in.field("payback.fuel_co2", in.put("Change the CO2 of fuel", "energy.fuel_co2"))
+	in.fuelPrice = in.field("payback.fuel_price", in.putFuel("Change the price of fuel", "energy.fuel_price", func() string { return currency(ctx).Symbol + "/L" }))
+	in.fuelCO2 = in.field("payback.fuel_co2", in.putFuel("Change the CO2 of fuel", "energy.fuel_co2", func() string { return "kg/L" }))
 	in.year = in.field("payback.co2.year", in.put("Change the year of the CO2 factor", "energy.co2_year"))
 	in.basis = in.choice("payback.co2.basis", "Change the basis of the CO2 factor", "energy.co2_basis", []string{"location", "market"})
 	in.ofPrice = container.NewVBox(widgets.Row("  it is", in.origin, nil), widgets.FieldRow("  note", in.note))
@@ -142,6 +142,17 @@ func (in *inputs) putCO2(text string) error {
 	return in.edit("Change the CO2 factor", "energy.co2", quantity)
 }
 
+// putFuel takes a value of fuel, with a decimal comma too; a bare number is by the litre.
+func (in *inputs) putFuel(name, target string, bare func() string) func(string) error {
+	return func(text string) error {
+		text = strings.Replace(strings.TrimSpace(text), ",", ".", 1)
+		if _, err := strconv.ParseFloat(text, 64); err == nil {
+			text += " " + bare()
+		}
+		return in.edit(name, target, text)
+	}
+}
+
 func (in *inputs) setCredit(on bool) {
 	if in.loading {
 		return
@@ -190,12 +201,12 @@ func (in *inputs) showFuel(f *audit.File) {
 	in.ofFuel.Show()
 	text, hint := "", in.ctx.Local("Not given yet; type what a litre or a kilogram costs, such as 1.6 "+currency(in.ctx).Symbol+"/L.")
 	if f.HasFuelPrice {
-		text, hint = f.FuelPrice.Text, said(f.FuelPrice)
+		text, hint = in.ctx.Local(f.FuelPrice.Text), said(f.FuelPrice)
 	}
 	in.fuelPrice.SetValue(text, hint)
 	text, hint = "", in.ctx.Local("Not given: 2.66 kg/L, mineral diesel.")
 	if f.HasFuelCO2 {
-		text, hint = f.FuelCO2.Text, said(f.FuelCO2)
+		text, hint = in.ctx.Local(f.FuelCO2.Text), said(f.FuelCO2)
 	}
 	in.fuelCO2.SetValue(text, hint)
 }

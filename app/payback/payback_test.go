@@ -2,6 +2,8 @@ package payback
 
 import (
 	"math"
+	"os"
+	"path/filepath"
 	"regexp"
 	"strings"
 	"testing"
@@ -12,6 +14,7 @@ import (
 	"barlitre/audit"
 	"barlitre/audit/pen"
 	"barlitre/machines/units"
+	"barlitre/samples"
 )
 
 const press, winch = "baling-press.yaml", "quayside-winch.yaml"
@@ -219,5 +222,49 @@ func TestPictures(t *testing.T) {
 		if m := p.Content().MinSize(); m.Width > 900 || m.Height > 480 {
 			t.Errorf("the least size is %v", m)
 		}
+	}
+}
+
+// Where an engine burns fuel its price and CO2 are asked for and reach the file, with a decimal comma or
+// by the litre as a bare number; elsewhere they are not.
+func TestFuelInputs(t *testing.T) {
+	c, p := shown(t, winch)
+	if p.inputs.ofFuel.Visible() {
+		t.Error("fuel is asked for without an engine")
+	}
+	data, err := samples.ReadStarter("closed-circuit-winch.yaml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	text := regexp.MustCompile(`M1: \{kind: electric_motor[^\n]*`).ReplaceAllString(string(data), "M1: {kind: engine, rated_power: 30 kW, speed: 1800 rpm, at: [8, 38]}")
+	path := filepath.Join(t.TempDir(), "engine.yaml")
+	if err := os.WriteFile(path, []byte(text), 0o600); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := c.Document.Open(path); err != nil {
+		t.Fatal(err)
+	}
+	again(c, p)
+	if !p.inputs.ofFuel.Visible() {
+		t.Fatal("the price of fuel is not asked for")
+	}
+	if f := typeInto(t, c, "payback.fuel_price", "1,62"); f.Bad() {
+		t.Fatalf("refused: %s", f.Note.Text)
+	}
+	if f := typeInto(t, c, "payback.fuel_co2", "2.7 kg/L"); f.Bad() {
+		t.Fatalf("refused: %s", f.Note.Text)
+	}
+	again(c, p)
+	f := c.Doc().File()
+	if f.FuelPrice.Text != "1.62 EUR/L" || math.Abs(f.FuelCO2.SI-2700) > 1e-9 {
+		t.Errorf("%q, %g kg/m3", f.FuelPrice.Text, f.FuelCO2.SI)
+	}
+	s, _ := c.Document.Solution()
+	y := s.Circuits[0].Year
+	if litres := y.Fuel.Total() / (830.565 * 43.027e6) * 1e3; math.Abs(s.Circuits[0].Money.Drawn-1.62*litres) > 1e-6*litres {
+		t.Errorf("costs %g for %g L", s.Circuits[0].Money.Drawn, litres)
+	}
+	if f := typeInto(t, c, "payback.fuel_price", "much"); !f.Bad() {
+		t.Error("took a word for a price")
 	}
 }

@@ -181,3 +181,14 @@ func TestFindingMarksItsField(t *testing.T) {
 		t.Errorf("on the sheet C1 is marked %q; the station needs mending: %v", b.s.editors[0].opt.Findings["C1"], b.s.Mend())
 	}
 }
+
+// A default that follows from other values of the block stands in the field with its reason.
+func TestDerivedDefaultIsShown(t *testing.T) {
+	b := newBench(t, press, window)
+	b.Select(0, "M1")
+	b.s.panel.showParameter("starts_per_hour")
+	r := b.field("starts_per_hour")
+	if r.field.Text != "" || r.field.PlaceHolder == "" || !strings.Contains(r.note.Text, "NEMA MG 10 from memory") {
+		t.Errorf("text %q, in its place %q, said %q", r.field.Text, r.field.PlaceHolder, r.note.Text)
+	}
+}
