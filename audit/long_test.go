@@ -132,7 +132,7 @@ func receive(t *testing.T, f *File, run func(*circuit.Compiled, *duty.Series, ci
 // the last bit, and is that of a run in one go.
 func TestLongDutyInParts(t *testing.T) {
 	f := longFile(t, 17_000)
-	longDuty(f.Duties[0], 17_000, 78e3) // more than the relief valve lets it press: there are shortfalls
+	longDuty(f.Duties[0], 17_000, 84e3) // more than the relief valve lets it press: there are shortfalls
 	cond, err := f.Conditions()
 	if err != nil {
 		t.Fatal(err)

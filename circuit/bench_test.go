@@ -12,9 +12,14 @@ import (
 	"barlitre/circuit/duty"
 )
 
+// nobody takes time steps, and chunks, and keeps nothing.
 type nobody struct{}
 
 func (nobody) Sample(*Sample) error { return nil }
+
+func (nobody) Part(int, int, *Sample) Receiver { return nobody{} }
+
+func (nobody) Join(Receiver) error { return nil }
 
 // dithered makes every sample differ from the one before: force × (1 + 0.05 sin 2π·1.7 t),
 // ram speed × (1 + 0.05 sin 2π·2.3 t), motor speed × (1 + 0.05 sin 2π·1.3 t).
@@ -126,9 +131,9 @@ func sections(n int) (text string, axes []duty.Axis, d *duty.Duty) {
 	return t.String(), axes, d
 }
 
-// BenchmarkDay measures a day at 100 Hz, 8.64 million samples, on one goroutine and
-// on all processors, and the most memory that the process has taken from the system
-// up to then. It runs only with BARLITRE_LONG set.
+// BenchmarkDay measures a day at 100 Hz, 8.64 million samples, in one go and in chunks on
+// one and on two goroutines, and the most memory that the process has taken from the
+// system up to then (runtime.MemStats.Sys). It runs only with BARLITRE_LONG set.
 func BenchmarkDay(b *testing.B) {
 	if os.Getenv("BARLITRE_LONG") == "" {
 		b.Skip("set BARLITRE_LONG to measure a day")
@@ -139,18 +144,23 @@ func BenchmarkDay(b *testing.B) {
 		b.Fatal(found)
 	}
 	s, p := k.Series(d), k.Defaults()
-	runs := map[string]func() (State, Certificate, error){
-		"one": func() (State, Certificate, error) {
-			return Run(context.Background(), k, p, s, trialOil, State{}, nobody{})
-		},
-		"all": func() (State, Certificate, error) {
-			return RunParallel(context.Background(), k, p, s, trialOil, 0, nobody{})
-		},
+	in := func(workers int) func() (State, Certificate, error) {
+		return func() (State, Certificate, error) {
+			return RunParallel(context.Background(), k, p, s, trialOil, workers, nobody{})
+		}
 	}
-	for _, name := range []string{"one", "all"} {
-		b.Run(name, func(b *testing.B) {
+	for _, c := range []struct {
+		name string
+		run  func() (State, Certificate, error)
+	}{
+		{"whole", func() (State, Certificate, error) {
+			return Run(context.Background(), k, p, s, trialOil, State{}, nobody{})
+		}},
+		{"chunks-one", in(1)}, {"chunks-two", in(2)},
+	} {
+		b.Run(c.name, func(b *testing.B) {
 			for range b.N {
-				if _, cert, err := runs[name](); err != nil || cert.Unbalanced > 0 {
+				if _, cert, err := c.run(); err != nil || cert.Unbalanced > 0 {
 					b.Fatal(err, cert)
 				}
 			}

@@ -213,15 +213,8 @@ func (r *run) approach(k int, share float64, x, good []float64) balance.Result {
 	return res
 }
 
-// between reads what at gives at a share of the way from the step before k to k.
-func between(at func(k int) float64, k int, share float64) float64 {
-	now := at(k)
-	if share >= 1 || k == 0 {
-		return now
-	}
-	before := at(k - 1)
-	return before + share*(now-before)
-}
+// between is a value at a share of the way from the step before to the one at hand.
+func between(before, now, share float64) float64 { return before + share*(now-before) }
 
 // next is the time from a point to the one after it; what follows a series is taken
 // to go on as it did.
@@ -241,7 +234,11 @@ func (r *run) next(k int, share float64) float64 {
 func (r *run) begin(k int, share float64) {
 	s := &r.step
 	s.k, s.standing, s.stood = k, true, r.state.stood
-	s.t = between(func(k int) float64 { return r.series.T[k] }, k, share)
+	s.t = r.series.T[k]
+	inside := share < 1 && k > 0
+	if inside {
+		s.t = between(r.series.T[k-1], s.t, share)
+	}
 	s.dt = 0
 	if r.state.begun {
 		s.dt = max(0, s.t-r.state.lastT)
@@ -251,7 +248,10 @@ func (r *run) begin(k int, share float64) {
 		a, d := &s.axes[i], &r.series.Axes[i]
 		*a = axisStep{}
 		a.given, a.standing, a.travel, a.before = d.Given, d.Standing[k], r.state.travel[i], r.state.speed[i]
-		a.load, a.command, a.demand = between(d.LoadAt, k, share), between(d.CommandAt, k, share), between(d.SpeedAt, k, share)
+		a.load, a.command, a.demand = d.LoadAt(k), d.CommandAt(k), d.SpeedAt(k)
+		if inside {
+			a.load, a.command, a.demand = between(d.LoadAt(k-1), a.load, share), between(d.CommandAt(k-1), a.command, share), between(d.SpeedAt(k-1), a.demand, share)
+		}
 		if d.Accel != nil {
 			a.accel = d.Accel[k]
 		}
