@@ -29,7 +29,8 @@ type machine struct {
 	turb, comp   int // those of the slip where the machine has no such term
 	inert        int // that of the friction
 
-	part       float64 // of the parameters' displacement and drag that this section has; 0 = all
+	switched   switchedLosses // of a cylinder-switched machine
+	part       float64        // of the parameters' displacement and drag that this section has; 0 = all
 	law        machines.Displacement
 	d          float64 // displacement over that of the shaft's largest machine: flow per scaled speed
 	across     float64 // slip conductance P to S, scaled
@@ -132,6 +133,9 @@ func (m *machine) bindMachine(b *binding, shafts []shaft) {
 	m.cf1 = m.law.Cf * m.d
 	m.visc = m.law.Cv * D * b.cond.Viscosity * m.wPer / m.tPer
 	m.tc1 = m.law.Tc / m.tPer
+	if m.switched.on {
+		m.bindSwitched(b)
+	}
 }
 
 // worn multiplies the slip by the wear, or makes it that of a measured case drain.
@@ -176,6 +180,9 @@ func (m *machine) evalMachine(e *eval) {
 	}
 	if m.law.K > 0 || m.law.Kd > 0 {
 		m.evalCompression(e)
+	}
+	if m.switched.on {
+		m.evalSwitched(e)
 	}
 	if m.free { // the torque row of the shaft sums them
 		m.addTorque(e, m.row, 1, m.torque(e))
@@ -233,6 +240,9 @@ func (m *machine) torque(e *eval) torque {
 	}
 	dry, slope := m.cf1*math.Abs(dp)+m.tc1, m.cf1*sign(dp)
 	t := torque{set*m.d*dp + sg*dry + m.visc*w, m.d * dp, m.visc, set*m.d + sg*slope, dry}
+	if m.switched.on {
+		m.switchedTorque(&t, set, dp, sg)
+	}
 	if m.law.Ch > 0 {
 		T, byE, byW := m.law.InertialTorque(set, w*m.wPer, m.oil.Density)
 		t.need += T / m.tPer
@@ -267,7 +277,8 @@ func (m *machine) bookMachine(k *booking) {
 		k.lose(m.turb, k.watts(t*dp))
 		return laminar*dp + t
 	}
-	a, dP, dS := flow(m.P, m.S, 1-m.kc, m.across), flow(m.P, m.D, m.kc, m.drain), flow(m.S, m.D, m.kc, m.drain)
+	across, drain := m.laminar(set)
+	a, dP, dS := flow(m.P, m.S, 1-m.kc, across), flow(m.P, m.D, m.kc, drain), flow(m.S, m.D, m.kc, drain)
 	c, _, _, _ := m.compression(set, ws, pP-pS)
 	k.lose(m.comp, k.watts(c*(pP-pS)))
 	k.put(m.qP, k.m3s(-q+a+c+dP))
@@ -280,7 +291,7 @@ func (m *machine) bookMachine(k *booking) {
 	}
 	friction := (m.law.Cf*m.law.D*math.Abs(dp)+m.law.Tc)*dir + m.law.Cv*m.law.D*k.cond.Viscosity*w
 	inertial, _, _ := m.law.InertialTorque(set, w, k.cond.Density)
-	T := set*m.law.D*dp + friction + inertial
+	T := set*m.law.D*dp + friction + inertial + m.bookSwitched(k, set, dp, dir, w)
 	k.lose(m.rub, friction*w)
 	k.lose(m.inert, inertial*w)
 	k.put(m.sigW, w)

@@ -27,6 +27,8 @@ type Watch struct {
 	span   float64
 	mach   []machineWatch
 	drives []driveWatch
+
+	services []switchedWatch
 }
 
 // extreme is the range of a signal and when it was reached.
@@ -102,13 +104,14 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 	}
 	for _, b := range sorted(c.circuit.Blocks) {
 		w.drive(b, get(b.ID+".w"), get(b.ID+".T"))
+		w.service(b, get)
 		switch b.Kind {
 		case kindElectricMotor:
 			p, n := w.value(b, "rated_power"), w.value(b, "speed")
 			w.motors = append(w.motors, motorWatch{b: b, torque: get(b.ID + ".T"), speed: get(b.ID + ".w"), rated: p / n})
 		case kindRelief:
 			w.reds = append(w.reds, reliefWatch{b: b, flow: get(b.ID + ".P.q"), p: get(b.ID + ".P.p")})
-		case kindPump, kindChargePump, kindHydraulicMotor, kindFlowDivider:
+		case kindPump, kindSwitched, kindChargePump, kindHydraulicMotor, kindFlowDivider:
 			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1)}
 			if b.Kind == kindHydraulicMotor {
 				m.pP, m.pS = get(b.ID+".A.p"), get(b.ID+".B.p")
@@ -196,6 +199,9 @@ func (w *Watch) Sample(s *Sample) error {
 	}
 	for i := range w.mach {
 		w.mach[i].take(s, dt)
+	}
+	for i := range w.services {
+		w.services[i].take(s, dt)
 	}
 	for i := range w.drives {
 		w.drives[i].take(s, dt)
