@@ -41,6 +41,7 @@ type CircuitRun struct {
 	Year     *Year
 	Heat     *Heat
 	Money    YearCost
+	Services []*Service // of cylinder-switched machines
 }
 
 // DutyRun is one circuit over one duty.
@@ -52,6 +53,8 @@ type DutyRun struct {
 	Peak        circuit.Peak
 	Shortfalls  []circuit.Shortfall
 	Plot        *Plot
+	Exchanges   []Exchange // between machines on one shaft
+	Services    []ServiceRun
 }
 
 // Solve runs every circuit of the file over every duty and draws up the balances.
@@ -88,7 +91,9 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		c.Year = year(c.Duties)
 		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
 		c.Money = s.Tariff.YearCost(c.Year)
+		c.Services = c.services()
 		c.Findings = append(c.Findings, c.remarks()...)
+		c.Findings = append(c.Findings, c.serviceRemarks()...)
 		c.Findings = append(c.Findings, circuitCautions(c)...)
 	}
 	s.Comparisons = s.compare()
@@ -202,6 +207,8 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 		plot.plot.Thinned = false
 		receivers = circuit.Receivers{ledger, watch, &until{plot, series.T[steps-1]}}
 	}
+	passed, used := newExchanges(c), newServices(c, j.solution.Conditions)
+	receivers = append(receivers, passed, used)
 	table, err := j.openTable(c, r, number)
 	if err != nil {
 		return err
@@ -235,6 +242,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	r.Certificate, r.Plot = cert, plot.plot
 	r.Cycles = cycles
 	r.Peak, r.Shortfalls = watch.PeakPressure(), watch.Shortfalls(cycles)
+	r.Exchanges, r.Services = passed.list(cycles), used.list(watch.SwitchedUses(cycles), cycles)
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())
 	return nil

@@ -315,6 +315,9 @@ func (p *Param) checkChoice(w string) string {
 	return ""
 }
 
+// Names writes names as people do: "a, b and c".
+func Names(words []string) string { return join(words, "and") }
+
 // join writes a list as people do: "a, b or c".
 func join(words []string, last string) string {
 	switch len(words) {
