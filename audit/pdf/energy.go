@@ -38,6 +38,7 @@ func (l *layout) energy() {
 			l.table(fromReport(c.Losses))
 			l.table(fromReport(c.States))
 		}
+		l.services(i)
 		for _, d := range c.Duties {
 			t := fromReport(d.Losses)
 			t.title += ": " + d.Name
