@@ -22,7 +22,7 @@ func serviceTable(p printer, c *CircuitRun) Table {
 	for _, s := range c.Services {
 		t.Head = append(t.Head, s.Block)
 	}
-	row("cylinders", func(s *Service) string { return units.Number(s.Law.N, 4) })
+	row("cylinders", func(s *Service) string { return fmt.Sprintf("%.0f", s.Law.N) })
 	row("mean pressure of its flow", func(s *Service) string { return orDash(s.Beside.MeanPressure(), units.Pressure, p) })
 	row("flow step: one cylinder more", func(s *Service) string { return orDash(s.Law.Step(s.Beside.MeanSpeed()), units.Flow, p) })
 	row("peak flow of one stroke", func(s *Service) string { return orDash(s.Law.StrokePeak(s.Beside.MeanSpeed()), units.Flow, p) })
