@@ -78,6 +78,7 @@ func printCircuit(w io.Writer, c audit.CircuitPage) {
 		table(w, rows)
 	}
 	auditTable(w, c.States)
+	auditTable(w, c.Services)
 	auditTable(w, c.Losses)
 	for _, d := range c.Duties {
 		fmt.Fprintf(w, "\n  One cycle of %s\n", d.Name)

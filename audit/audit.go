@@ -41,6 +41,7 @@ type CircuitRun struct {
 	Year     *Year
 	Heat     *Heat
 	Money    YearCost
+	Services []*Service // of cylinder-switched machines
 }
 
 // DutyRun is one circuit over one duty.
@@ -55,6 +56,8 @@ type DutyRun struct {
 	Measured    []Measurement
 	Plot        *Plot
 	Operating   map[string][]Operating // states of the displacement machines, by block
+	Exchanges   []Exchange             // between machines on one shaft
+	Services    []ServiceRun
 }
 
 // Solve runs every circuit of the file over every duty and draws up the balances.
@@ -92,9 +95,11 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		c.Year = year(c.Duties)
 		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
 		c.Money = s.Tariff.YearCost(c.Year)
+		c.Services = c.services()
 		c.Findings = append(c.Findings, c.remarks()...)
 		c.Findings = append(c.Findings, s.fuelRemarks(c)...)
 		c.Findings = append(c.Findings, s.extrapolations(c)...)
+		c.Findings = append(c.Findings, c.serviceRemarks()...)
 		c.Findings = append(c.Findings, circuitCautions(c)...)
 	}
 	s.Comparisons = s.compare()
@@ -210,6 +215,13 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	if compared != nil {
 		receivers = append(receivers, compared)
 	}
+	passed, used := newExchanges(c), newServices(c, j.solution.Conditions)
+	if len(passed.groups) > 0 {
+		receivers = append(receivers, passed)
+	}
+	if len(used.runs) > 0 {
+		receivers = append(receivers, used)
+	}
 	table, err := j.openTable(c, r, number)
 	if err != nil {
 		return err
@@ -245,6 +257,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	r.Peak, r.Shortfalls, r.Gates = watch.PeakPressure(), watch.Shortfalls(cycles), watch.Gates()
 	r.Operating = operation.all()
 	r.Measured, r.Plot.Measured = compared.results(), measuredTracks(r.Duty, compared)
+	r.Exchanges, r.Services = passed.list(cycles), used.list(watch.SwitchedUses(cycles), cycles)
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
 	j.note(r.Duty.Name, watch.Findings())
 	return nil

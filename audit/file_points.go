@@ -13,7 +13,10 @@ import (
 // measured reads the measured points of a machine and fits its law to them.
 func (r *reader) measured(s scope, b *circuit.Block, kind *circuit.Kind, n *yaml.Node) {
 	table, name := r.beside(s, n, "points")
-	full, ok := b.Values["displacement"]
+	full, ok := b.Values["points_displacement"] // of another machine than the block
+	if !ok {
+		full, ok = b.Values["displacement"]
+	}
 	if table == nil || !ok || full.SI <= 0 {
 		return // said already, or said by the check
 	}

@@ -23,7 +23,7 @@ const (
 var groups = []group{
 	{"electric motors and converters", []string{"electric_motor", "converter"}},
 	{"combustion engines", []string{"engine"}},
-	{"pumps and hydraulic motors", []string{"pump", "charge_pump", "motor", "flow_divider", "gearbox"}},
+	{"pumps and hydraulic motors", []string{"pump", "switched_machine", "charge_pump", "motor", "flow_divider", "gearbox"}},
 	{reliefGroup, []string{"relief"}},
 	{"accumulators", []string{"accumulator"}},
 	{"unloading and flushing", []string{"unloading", "unloading_pilot", "flushing"}},

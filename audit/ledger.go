@@ -330,5 +330,5 @@ func ShaftSignals(c *circuit.Circuit, signals []circuit.Signal) []int {
 	if m := of("electric_motor", "engine"); len(m) > 0 {
 		return m
 	}
-	return of("pump", "charge_pump")
+	return of("pump", "switched_machine", "charge_pump")
 }

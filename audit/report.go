@@ -61,6 +61,7 @@ type CircuitPage struct {
 	Heat             []Figure
 	States           Table // time and energy by state of the machine
 	Losses           Table // over the year
+	Services         Table // of a cylinder-switched machine; empty without one
 	Parameters       []ParameterRow
 	Findings         []circuit.Finding
 }
@@ -136,6 +137,7 @@ func (s *Solution) circuitPage(p printer, c *CircuitRun) CircuitPage {
 		page.Heat = s.heatFigures(p, c)
 		page.States = stateTable(p, c.Year)
 		page.Losses = s.yearLossTable(p, c)
+		page.Services = serviceTable(p, c)
 	}
 	return page
 }

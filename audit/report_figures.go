@@ -33,6 +33,9 @@ func dutyPage(p printer, d *DutyRun) DutyPage {
 	energy("work against loads", b.WorkPositive().Total(), trapezoid+", P = max(F·v, 0) or max(T·ω, 0) by axis")
 	energy("work taken from driving loads", b.WorkNegative().Total(), trapezoid+", P = min(F·v, 0) or min(T·ω, 0) by axis")
 	energy("put into store", b.StoredEnergy().Total(), trapezoid+", P into stores")
+	for _, e := range d.Exchanges {
+		energy("passed between "+circuit.Names(e.Blocks)+" through their shaft", e.Energy, trapezoid+", P = min(Σ max(P_i, 0), Σ max(−P_i, 0)) over the machines on the shaft; it stays in the circuit and stands on no side of the balance")
+	}
 	energy("lost in all", b.LossEnergy().Total(), "Σ of all losses")
 	energy("heat to the oil", b.HeatToOil().Total(), "Σ of losses with sink oil")
 	add("closure", b.Closure(), units.Format(b.Closure(), units.Percent, 2), Calculation{

@@ -52,6 +52,7 @@ type CircuitResult struct {
 	Name     string            `json:"name"`
 	Duties   []DutyResult      `json:"duties"` // those that were solved
 	Year     YearResult        `json:"year"`
+	Services []ServiceResult   `json:"services,omitempty"` // of cylinder-switched machines
 	Findings []circuit.Finding `json:"findings"`
 }
 
@@ -81,6 +82,8 @@ type EnergyResult struct {
 	Stored       float64      `json:"stored"` // end minus start
 	HeatToOil    float64      `json:"heat_to_oil"`
 	Losses       []LossResult `json:"losses"`
+	// Passed between machines over a shaft they share; it stays in the circuit and is no term of the balance.
+	Passed float64 `json:"passed_through_shafts,omitempty"`
 }
 
 // WorkResult is the work of one axis over a cycle.
@@ -166,7 +169,7 @@ func (s *Solution) Result() *Result {
 	r := &Result{Format: ResultFormat, Title: s.File.Title, Circuits: []CircuitResult{}, Comparisons: []ComparisonResult{}}
 	for _, c := range s.Circuits {
 		cr := CircuitResult{Name: c.Circuit.Name, Duties: []DutyResult{}, Year: s.yearResult(c),
-			Findings: append([]circuit.Finding{}, c.Findings...)}
+			Services: serviceResults(c), Findings: append([]circuit.Finding{}, c.Findings...)}
 		for _, d := range c.Duties {
 			if d.Balance != nil {
 				cr.Duties = append(cr.Duties, dutyResult(d))
@@ -189,7 +192,7 @@ func dutyResult(d *DutyRun) DutyResult {
 		Name: d.Duty.Name, HoursPerYear: d.Duty.Hours / units.Hour, CyclesAveraged: max(d.Cycles, 1), CycleS: b.Cycle, TimeSteps: b.Steps,
 		Energy: EnergyResult{SupplyIn: b.SupplyIn.Total(), Returned: b.Returned.Total(),
 			WorkPositive: b.WorkPositive().Total(), WorkNegative: b.WorkNegative().Total(),
-			Stored: b.StoredEnergy().Total(), HeatToOil: b.HeatToOil().Total(), Work: []WorkResult{}, Losses: []LossResult{}},
+			Stored: b.StoredEnergy().Total(), HeatToOil: b.HeatToOil().Total(), Work: []WorkResult{}, Losses: []LossResult{}, Passed: d.Exchanged()},
 		Closure: b.Closure(),
 		Peak: PeakResult{Pressure: Number(d.Peak.Value), At: d.Peak.At, T: Number(d.Peak.T), UpperEstimate: d.Peak.UpperEstimate,
 			Shaft: Number(b.PeakShaft), Supply: Number(b.PeakSupply)},

@@ -195,8 +195,10 @@ func (m *pumpModel) bind(b *binding) {
 	if m.regulated() {
 		m.eMin = b.get(m.minSet, 0)
 	}
-	m.from = b.p[m.start] / b.scales.p
-	m.fall = (1 - m.eMin) * b.scales.p / (b.p[m.end] - b.p[m.start])
+	if m.ctl == sensesFlow {
+		m.from = b.p[m.start] / b.scales.p
+		m.fall = (1 - m.eMin) * b.scales.p / (b.p[m.end] - b.p[m.start])
+	}
 	if m.e >= 0 {
 		b.bound.Weight[m.e] = 10
 	}

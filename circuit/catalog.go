@@ -48,6 +48,8 @@ type Param struct {
 	Type    ParamType
 	Dim     units.Dim
 	Default string // as written in a file; "" = none
+	Low     string // of the default's range, as Default; "" = none
+	High    string
 	Origin  Origin // of the default
 	Source  string // why this default
 	Min     float64
@@ -133,6 +135,7 @@ const (
 	kindPump           = "pump"
 	kindChargePump     = "charge_pump"
 	kindHydraulicMotor = "motor"
+	kindSwitched       = "switched_machine"
 	kindCylinder       = "cylinder"
 	kindDoubleRod      = "double_rod"
 	kindPlunger        = "plunger"
@@ -218,6 +221,7 @@ func init() {
 		pumpKind,
 		chargePumpKind,
 		hydraulicMotorKind,
+		switchedKind,
 		cylinderKind,
 		doubleRodKind,
 		plungerKind,
@@ -261,9 +265,21 @@ func init() {
 			if err != nil {
 				panic(fmt.Sprintf("circuit: default of %s.%s: %v", k.Name, p.Key, err))
 			}
-			p.defaultValue = Value{SI: si, Text: p.Default, Unit: u, Origin: p.Origin, Low: math.NaN(), High: math.NaN(), Note: p.Source}
+			p.defaultValue = Value{SI: si, Text: p.Default, Unit: u, Origin: p.Origin, Low: p.end(p.Low), High: p.end(p.High), Note: p.Source}
 		}
 	}
+}
+
+// end reads one end of the range of a default, NaN without one.
+func (p *Param) end(text string) float64 {
+	if text == "" {
+		return math.NaN()
+	}
+	si, _, err := units.Parse(text, p.Dim)
+	if err != nil {
+		panic(fmt.Sprintf("circuit: range of the default of %s: %v", p.Key, err))
+	}
+	return si
 }
 
 // checkValue reports in words what is wrong with a number for this parameter, or "".
@@ -299,6 +315,9 @@ func (p *Param) checkChoice(w string) string {
 	}
 	return ""
 }
+
+// Names writes names as people do: "a, b and c".
+func Names(words []string) string { return join(words, "and") }
 
 // join writes a list as people do: "a, b or c".
 func join(words []string, last string) string {

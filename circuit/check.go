@@ -256,6 +256,9 @@ func (k *checker) takes(d *duty.Duty, b *Block, w duty.What) {
 	}
 }
 
+// isPump reports whether a block is a pump or a service that its shaft drives alike.
+func isPump(b *Block) bool { return b.Kind == kindPump || b.Kind == kindSwitched }
+
 // isPQ reports whether a block is a pump that takes set pressure and set flow.
 func isPQ(b *Block) bool {
 	return b.Kind == kindPump && follows(b) == "" && KindNamed(b.Kind).WordOf(b, "control") == "pq"

@@ -140,7 +140,7 @@ func (k *checker) fed(control *Block) {
 			return
 		}
 		for _, p := range n.ports {
-			if kind := k.c.Block(p.Block).Kind; (kind == kindPump || kind == kindChargePump) && p.Port != "D" {
+			if kind := k.c.Block(p.Block).Kind; (kind == kindPump || kind == kindSwitched || kind == kindChargePump) && p.Port != "D" {
 				return
 			}
 		}
@@ -180,7 +180,7 @@ var outlets = map[string]map[string][]string{
 	kindShuttleFlow: {"X": {"A"}, "Y": {"A"}, "A": {"X", "Y"}}, kindSection63: {"P": {"A", "B"}, "A": {"T", "P"}, "B": {"T", "P"}, "C1": {"C2"}, "C2": {"C1"}},
 	kindCooler: {"A": {"B"}, "B": {"A"}}, kindFlowPoint: {"A": {"B"}, "B": {"A"}}, kindFlowDivider: {"P": {"A", "B"}, "A": {"P"}, "B": {"P"}},
 	kindCompensator: {"P": {"A"}}, kindValve: {"P": {"A", "B", "T"}, "A": {"T", "P"}, "B": {"T", "P"}},
-	kindRelief: {"P": {"T"}}, kindPump: {"P": {"S"}, "S": {"P"}}, kindHydraulicMotor: {"A": {"B"}, "B": {"A"}},
+	kindRelief: {"P": {"T"}}, kindPump: {"P": {"S"}, "S": {"P"}}, kindSwitched: {"P": {"S"}, "S": {"P"}}, kindHydraulicMotor: {"A": {"B"}, "B": {"A"}},
 	kindUnloading: {"P": {"A", "T"}}, kindCylinder: {"A": {"B"}, "B": {"A"}}, kindDoubleRod: {"A": {"B"}, "B": {"A"}}, kindChargePump: {"P": {"T"}, "S": {"P"}},
 }
 
@@ -189,7 +189,7 @@ var outlets = map[string]map[string][]string{
 func (k *checker) escapes(start *net, not string) bool {
 	pump := false
 	ways := func(b *Block, port string) []string {
-		pump = pump || b.Kind == kindPump
+		pump = pump || isPump(b)
 		if b.ID == not || b.Kind == kindRelief || (port == "A" && KindNamed(b.Kind).WordOf(b, "reverse") == "blocked") {
 			return nil
 		}

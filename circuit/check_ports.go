@@ -20,7 +20,7 @@ func (k *checker) ports() {
 				k.say(Stops, b, "", "port %s (%s) is not connected", p.Name, p.Text)
 			}
 		}
-		if b.Kind == kindPump && kind.WordOf(b, "control") == "load_sensing" && k.of[PortRef{b.ID, "LS"}] == nil {
+		if isPump(b) && kind.WordOf(b, "control") == "load_sensing" && k.of[PortRef{b.ID, "LS"}] == nil {
 			k.say(Stops, b, "control", "a load-sensing pump needs a pilot line at its port LS")
 		}
 		if b.Kind == kindPump && kind.WordOf(b, "control") == "negative_flow" && k.of[PortRef{b.ID, "LS"}] == nil {
@@ -103,7 +103,7 @@ func (k *checker) pressureControls() {
 	at := map[*net]*Block{}
 	for _, b := range sorted(k.c.Blocks) {
 		c := KindNamed(b.Kind).WordOf(b, "control")
-		if b.Kind != kindPump || (c != "pressure" && c != "load_sensing" && c != "pq") {
+		if !isPump(b) || (c != "pressure" && c != "load_sensing" && c != "pq") {
 			continue
 		}
 		n := k.of[PortRef{b.ID, "P"}]

@@ -9,9 +9,9 @@ func (k *checker) safety() {
 		case kindAccumulator:
 			k.relieved(b, "P", "the oil side")
 			k.say(Caution, b, "", "it stays charged when the machine is off: before any work it must be shut off and discharged, and zero read on a gauge; it needs its own shut-off, relief, discharge and gauge, and the inspections of the local rules for pressure vessels")
-		case kindPump:
+		case kindPump, kindSwitched:
 			k.relieved(b, "P", "its outlet")
-			if n := k.of[PortRef{b.ID, "S"}]; n != nil && n.tank == "" && b.Word("both_directions") == "yes" {
+			if n := k.of[PortRef{b.ID, "S"}]; n != nil && n.tank == "" && KindNamed(b.Kind).WordOf(b, "both_directions") == "yes" {
 				k.relieved(b, "S", "its other side")
 			}
 		case kindCylinder:

@@ -29,7 +29,8 @@ type machine struct {
 	turb, comp   int // those of the slip where the machine has no such term
 	inert        int // that of the friction
 
-	part       float64 // of the parameters' displacement and drag that this section has; 0 = all
+	switched   switchedLosses // of a cylinder-switched machine
+	part       float64        // of the parameters' displacement and drag that this section has; 0 = all
 	law        machines.Displacement
 	d          float64 // displacement over that of the shaft's largest machine: flow per scaled speed
 	across     float64 // slip conductance P to S, scaled
@@ -136,6 +137,9 @@ func (m *machine) bindMachine(b *binding, shafts []shaft) {
 	m.cf1 = m.law.Cf * m.d
 	m.visc = m.law.Cv * D * b.cond.Viscosity * m.wPer / m.tPer
 	m.tc1 = m.law.Tc / m.tPer
+	if m.switched.on {
+		m.bindSwitched(b)
+	}
 }
 
 // worn gives the law the slip of a worn machine.

@@ -17,7 +17,8 @@ func (m *machine) bookMachine(k *booking) {
 		k.lose(m.turb, k.watts(t*dp))
 		return laminar*dp + t
 	}
-	a, dP, dS := flow(m.P, m.S, 1-m.kc, m.across), flow(m.P, m.D, m.kc, m.drain), flow(m.S, m.D, m.kc, m.drain)
+	across, drain := m.laminar(set)
+	a, dP, dS := flow(m.P, m.S, 1-m.kc, across), flow(m.P, m.D, m.kc, drain), flow(m.S, m.D, m.kc, drain)
 	c, _, _, _ := m.compression(set, ws, pP-pS)
 	c *= slip.V
 	k.lose(m.comp, k.watts(c*(pP-pS)))
@@ -32,7 +33,7 @@ func (m *machine) bookMachine(k *booking) {
 	friction := (m.law.Cf*m.law.D*math.Abs(dp)+m.law.Tc)*dir + m.law.Cv*m.law.D*k.cond.Viscosity*w
 	inertial, _, _ := m.law.InertialTorque(set, w, k.cond.Density)
 	friction, inertial = rub.V*friction, rub.V*inertial
-	T := set*m.law.D*dp + friction + inertial
+	T := set*m.law.D*dp + friction + inertial + m.bookSwitched(k, set, dp, dir, w)
 	k.lose(m.rub, friction*w)
 	k.lose(m.inert, inertial*w)
 	k.put(m.sigW, w)

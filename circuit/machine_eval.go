@@ -42,6 +42,9 @@ func (m *machine) evalSlip(e *eval) {
 	if m.law.K > 0 || m.law.Kd > 0 {
 		m.evalCompression(e)
 	}
+	if m.switched.on {
+		m.evalSwitched(e)
+	}
 }
 
 // turbulent is a share of the turbulent slip from a to b and its slope, scaled.
@@ -144,6 +147,9 @@ func (m *machine) torque(e *eval) torque {
 		rub.need += T / m.tPer
 		rub.e = byE / m.tPer
 		rub.w += byW * m.wPer / m.tPer
+	}
+	if m.switched.on {
+		m.switchedTorque(&rub, set, dp, sg)
 	}
 	if m.chart != nil {
 		_, g := m.factors(set, w, dp)

@@ -81,7 +81,7 @@ func (k *compiler) turning(b *Block) (ids []string) {
 // shaftPolarity is the polarity of the pumps on a motor's shaft.
 func (k *compiler) shaftPolarity(b *Block, axis int) polarity {
 	for _, p := range trainPorts(k.circuit, k.of, b) {
-		if o := k.circuit.Block(p.Block); o.Kind == kindPump {
+		if o := k.circuit.Block(p.Block); isPump(o) {
 			q := PortRef{o.ID, "P"}
 			if p := k.polarityOf(q, axis); p != byDemand || k.directed(axis) {
 				return p

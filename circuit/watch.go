@@ -30,6 +30,8 @@ type Watch struct {
 	drives []driveWatch
 	links  []linkWatch
 	sets   []startWatch
+
+	services []switchedWatch
 }
 
 // extremes are the ranges of the signals, by signal, and when they were reached.
@@ -115,6 +117,7 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 	}
 	for _, b := range sorted(c.circuit.Blocks) {
 		w.drive(b, get(b.ID+".w"), get(b.ID+".T"))
+		w.service(b, get)
 		switch b.Kind {
 		case kindElectricMotor:
 			w.motors = append(w.motors, w.motor(b, get))
@@ -122,7 +125,7 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 			w.links = append(w.links, linkWatch{b: b, resistor: w.channelOf(b, "brake resistor")})
 		case kindRelief:
 			w.reds = append(w.reds, reliefWatch{b: b, flow: get(b.ID + ".P.q"), p: get(b.ID + ".P.p")})
-		case kindPump, kindChargePump, kindHydraulicMotor, kindFlowDivider:
+		case kindPump, kindSwitched, kindChargePump, kindHydraulicMotor, kindFlowDivider:
 			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1), slow: math.Inf(1)}
 			if b.Kind == kindHydraulicMotor {
 				m.pP, m.pS = get(b.ID+".A.p"), get(b.ID+".B.p")
@@ -212,6 +215,9 @@ func (w *Watch) take(s *Sample) {
 	}
 	for i := range w.mach {
 		w.mach[i].take(s, dt)
+	}
+	for i := range w.services {
+		w.services[i].take(s, dt)
 	}
 	for i := range w.drives {
 		w.drives[i].take(s, dt)

@@ -24,6 +24,7 @@ func (w *Watch) Findings() []Finding {
 	w.motions(f)
 	w.reliefs(f)
 	w.accumulators(f)
+	w.switchedFindings(f)
 	for i, v := range w.voids {
 		if v.worst > 0.01*units.LitrePerMinute {
 			f.add(Warns, nil, "", v.t, "%s runs empty: %s are missing at %s. Feed it through a make-up check valve, or hold the load back with a counterbalance valve", w.c.nodes[i].name, show(v.worst, units.Flow), clock(v.t))

@@ -48,6 +48,9 @@ func (w *Watch) Join(part Receiver) error {
 	for i := range w.drives {
 		w.drives[i].join(&p.drives[i])
 	}
+	for i := range w.services {
+		w.services[i].join(&p.services[i])
+	}
 	for i := range w.voids {
 		v, o := &w.voids[i], &p.voids[i]
 		later(&v.worst, &v.t, o.worst, o.t)
@@ -111,6 +114,15 @@ func (m *motorWatch) join(o *motorWatch) {
 	later(&m.peak, &m.tPeak, o.peak, o.tPeak)
 	later(&m.most, &m.tMax, o.most, o.tMax)
 	later(&m.fast, &m.tFast, o.fast, o.tFast)
+}
+
+func (m *switchedWatch) join(o *switchedWatch) {
+	m.sum += o.sum
+	m.busy += o.busy
+	m.low += o.low
+	if o.worst > m.worst {
+		m.worst, m.at, m.worstRipple, m.worstDP = o.worst, o.at, o.worstRipple, o.worstDP
+	}
 }
 
 func (s *startWatch) join(o *startWatch) {

@@ -15,24 +15,28 @@ import (
 // quoted says where each row of the tables in README.md comes from: one figure a
 // circuit, or one for the comparison.
 var quoted = map[string]func(*audit.CircuitRun) float64{
-	"energy drawn, MWh a year":                          func(c *audit.CircuitRun) float64 { return c.Year.Drawn.Total() / megawattHour },
-	"energy returned to the mains, MWh a year":          func(c *audit.CircuitRun) float64 { return c.Year.Returned.Total() / megawattHour },
-	"energy bill, EUR a year":                           func(c *audit.CircuitRun) float64 { return c.Money.Net() },
-	"work against the load, % of the energy drawn":      func(c *audit.CircuitRun) float64 { return share(c, c.Year.WorkPositive().Total()) },
-	"drawn while nothing moves, %":                      func(c *audit.CircuitRun) float64 { return share(c, c.Year.Drawn.Holding+c.Year.Drawn.Idle) },
-	"over relief valves, %":                             lossOf("relief"),
-	"in valves that throttle or brake, %":               lossOf("metering", "unloaded circulation", "braking of the load"),
-	"in the counterbalance valve, %":                    lossOf("braking of the load"),
-	"in compensators, %":                                lossOf("compensator"),
-	"in the brake resistor, %":                          lossOf("brake resistor"),
-	"in pumps and hydraulic motors, %":                  machines,
-	"in electric motor, converter and gearbox, %":       lossOf("electric motor", "converter", "brake resistor", "gearbox"),
-	"mean power over a cycle of work, kW":               func(c *audit.CircuitRun) float64 { return mean(c, 0) / 1e3 },
-	"mean power while waiting, kW":                      func(c *audit.CircuitRun) float64 { return mean(c, 1) / 1e3 },
-	"highest power drawn, kW":                           func(c *audit.CircuitRun) float64 { return c.Duties[0].Balance.PeakSupply / 1e3 },
-	"highest pressure, bar":                             func(c *audit.CircuitRun) float64 { return c.Duties[0].Peak.Value / 1e5 },
-	"mean heat into the oil, kW":                        func(c *audit.CircuitRun) float64 { return c.Heat.Year.Mean / 1e3 },
-	"returned energy at the price of drawn, EUR a year": func(c *audit.CircuitRun) float64 { return c.Year.Returned.Total() * 0.18 / kilowattHour },
+	"energy drawn, MWh a year":                           func(c *audit.CircuitRun) float64 { return c.Year.Drawn.Total() / megawattHour },
+	"energy returned to the mains, MWh a year":           func(c *audit.CircuitRun) float64 { return c.Year.Returned.Total() / megawattHour },
+	"energy bill, EUR a year":                            func(c *audit.CircuitRun) float64 { return c.Money.Net() },
+	"work against the load, % of the energy drawn":       func(c *audit.CircuitRun) float64 { return share(c, c.Year.WorkPositive().Total()) },
+	"drawn while nothing moves, %":                       func(c *audit.CircuitRun) float64 { return share(c, c.Year.Drawn.Holding+c.Year.Drawn.Idle) },
+	"over relief valves, %":                              lossOf("relief"),
+	"in valves that throttle or brake, %":                lossOf("metering", "unloaded circulation", "braking of the load"),
+	"in the counterbalance valve, %":                     lossOf("braking of the load"),
+	"in compensators, %":                                 lossOf("compensator"),
+	"in the brake resistor, %":                           lossOf("brake resistor"),
+	"in pumps and hydraulic motors, %":                   machines,
+	"in electric motor, converter and gearbox, %":        lossOf("electric motor", "converter", "brake resistor", "gearbox"),
+	"mean power over a cycle of work, kW":                func(c *audit.CircuitRun) float64 { return mean(c, 0) / 1e3 },
+	"mean power while waiting, kW":                       func(c *audit.CircuitRun) float64 { return mean(c, 1) / 1e3 },
+	"highest power drawn, kW":                            func(c *audit.CircuitRun) float64 { return c.Duties[0].Balance.PeakSupply / 1e3 },
+	"highest pressure, bar":                              func(c *audit.CircuitRun) float64 { return c.Duties[0].Peak.Value / 1e5 },
+	"mean heat into the oil, kW":                         func(c *audit.CircuitRun) float64 { return c.Heat.Year.Mean / 1e3 },
+	"in the combustion engine, %":                        lossOf("engine"),
+	"given back by the load, % of the energy drawn":      func(c *audit.CircuitRun) float64 { return -share(c, c.Year.WorkNegative().Total()) },
+	"passed between services over the shaft, kJ a cycle": func(c *audit.CircuitRun) float64 { return c.Duties[0].Exchanged() / 1e3 },
+	"idle cylinders, %":                                  lossOf("idle cylinders"),
+	"returned energy at the price of drawn, EUR a year":  func(c *audit.CircuitRun) float64 { return c.Year.Returned.Total() * 0.18 / kilowattHour },
 }
 
 var compared = map[string]func(*audit.Comparison) float64{
@@ -76,10 +80,10 @@ func machines(c *audit.CircuitRun) float64 {
 	sum := 0.0
 	for _, l := range c.Year.Losses {
 		b := c.Circuit.Block(l.Block) // nil for what a node loses
-		if b == nil || l.Kind != "slip" && l.Kind != "friction" {
+		if b == nil || l.Kind != "slip" && l.Kind != "friction" && b.Kind != "switched_machine" {
 			continue
 		}
-		if b.Kind == "pump" || b.Kind == "charge_pump" || b.Kind == "motor" {
+		if b.Kind == "pump" || b.Kind == "charge_pump" || b.Kind == "motor" || b.Kind == "switched_machine" {
 			sum += l.Energy.Total()
 		}
 	}
@@ -180,7 +184,8 @@ func TestReadmeClaims(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	for name, above := range map[string]bool{"baling-press.yaml": true, "quayside-winch.yaml": false, "handling-machine.yaml": false} {
+	for name, above := range map[string]bool{"baling-press.yaml": true, "quayside-winch.yaml": false, "handling-machine.yaml": false,
+		"ramp-carrier.yaml": false, "transfer-station.yaml": false} {
 		c := all[name].Comparisons[0]
 		if c.Published.Outside != above || !c.Published.Known {
 			t.Errorf("%s: %s", name, c.Published.Text)
@@ -189,6 +194,7 @@ func TestReadmeClaims(t *testing.T) {
 	press, winch := all["baling-press.yaml"].Circuits[0], all["quayside-winch.yaml"].Circuits[0]
 	handling := all["handling-machine.yaml"]
 	found, proposed := handling.Circuits[0], handling.Circuits[1]
+	station, carrier := all["transfer-station.yaml"], all["ramp-carrier.yaml"]
 	valves, still := "in valves that throttle or brake, %", "drawn while nothing moves, %"
 	for _, claim := range []struct {
 		words     string
@@ -200,12 +206,25 @@ func TestReadmeClaims(t *testing.T) {
 		{"more than a third in pump and motor", machines(winch), 100. / 3, 40},
 		{"nearly half in compensators, margin and counterbalance valve", quoted["in compensators, %"](found) + quoted[valves](found), 45, 50},
 		{"the resistor is the largest loss", quoted["in the brake resistor, %"](proposed), largestOther(proposed, "brake resistor"), 100},
+		{"a third in compensators and valve edges", quoted["in compensators, %"](station.Circuits[0]) + quoted[valves](station.Circuits[0]), 32, 35},
+		{"nearly half is saved", compared["saved, % of the as found"](station.Comparisons[0]), 42, 50},
+		{"most of the fuel never reaches the shaft", quoted["in the combustion engine, %"](carrier.Circuits[0]), 60, 100},
+		{"gone far above the range assumed", lowestGone(station.Circuits[1]), 1.5, 100},
 		{"more than half is saved", compared["saved, % of the as found"](handling.Comparisons[0]), 50, 60},
 	} {
 		if !(claim.x >= claim.lo && claim.x <= claim.hi) {
 			t.Errorf("%s: %.1f %%", claim.words, claim.x)
 		}
 	}
+}
+
+// lowestGone is the lowest idle loss at which a service loses its advantage, over the high end of the range assumed.
+func lowestGone(c *audit.CircuitRun) float64 {
+	least := math.Inf(1)
+	for _, s := range c.Services {
+		least = math.Min(least, s.Beside.Gone()/s.Idle[2].Loss)
+	}
+	return least
 }
 
 // largestOther returns the largest loss of another kind, as a share.

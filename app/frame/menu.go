@@ -109,6 +109,10 @@ func sampleTitle(name string) string {
 		return "Handling machine: load sensing, against a pump for each motion"
 	case "quayside-winch.yaml":
 		return "Quayside winch: valve and counterbalance, against a closed circuit"
+	case "ramp-carrier.yaml":
+		return "Wheel-driven carrier: throttled, against a closed circuit, starting on a slope"
+	case "transfer-station.yaml":
+		return "Transfer station: load sensing, against switched cylinders with three services on one shaft"
 	}
 	name = strings.ReplaceAll(strings.TrimSuffix(name, filepath.Ext(name)), "-", " ")
 	return strings.ToUpper(name[:1]) + name[1:]

@@ -22,6 +22,7 @@ type panel struct {
 	list    *fyne.Container
 	scroll  *container.Scroll
 	live    *live
+	service *service
 	rows    []row
 	all     *link
 	content *fyne.Container
@@ -35,6 +36,7 @@ func newPanel(s *Station) *panel {
 	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}}
 	p.head = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), p.drawHead), "sheet.title")
 	p.live = newLive(p)
+	p.service = newService(p)
 	p.list = container.New(tight{})
 	p.scroll = container.NewVScroll(container.New(edges{}, p.list))
 	inner := container.NewBorder(p.head, nil, nil, nil, p.scroll)
@@ -89,6 +91,7 @@ func (p *panel) changed(w station.What) {
 	if w.Has(station.Model | station.Solution | station.Selection | station.Settings) {
 		p.warn()
 		p.live.replot()
+		p.service.update()
 	}
 	p.live.moved()
 	p.relay()
@@ -132,6 +135,7 @@ func (p *panel) rebuild() {
 	}
 	if b != nil {
 		p.list.Add(p.live.content)
+		p.list.Add(p.service.content)
 	}
 	for _, r := range p.rows {
 		if f, ok := r.(interface{ restore() }); ok {

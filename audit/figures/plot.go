@@ -15,6 +15,9 @@ type Series struct {
 	Role Role
 	Dash bool // drawn with dashes, the second sign beside the colour
 	Fill bool // the area between line and zero is tinted
+
+	// Base makes a band instead of a line: the area between Y and Base is tinted. As long as X and Y.
+	Base []float64
 }
 
 // Lane is one track of a plot with its own vertical axis.
@@ -242,6 +245,11 @@ func (l Lane) span(from, to float64) (lo, hi float64) {
 				lo, hi = min(lo, v), max(hi, v)
 			}
 		}
+		for i := range min(len(s.X), len(s.Base)) {
+			if v := s.Base[i]; finite(v) && s.X[i] >= from && s.X[i] <= to {
+				lo, hi = min(lo, v), max(hi, v)
+			}
+		}
 	}
 	if zero && lo <= hi {
 		lo, hi = min(lo, 0), max(hi, 0)
@@ -318,6 +326,10 @@ func (d *plotLayout) laneTitle(i int, l LaneArea) {
 
 // series draws one line of a lane.
 func (d *plotLayout) series(i, n int, s Series) {
+	if s.Base != nil {
+		d.band(i, s)
+		return
+	}
 	a, l := d.area, d.area.Lanes[i]
 	c := d.pal.Color(s.Role)
 	st := pen.Stroke{W: 1.6, C: c, Dash: d.Lanes[i].dash(n)}
@@ -340,6 +352,35 @@ func (d *plotLayout) series(i, n int, s Series) {
 		d.p.Polyline(pts, false, color.NRGBA{}, st)
 	}
 }
+
+// band tints the area between the two courses of a series; it breaks where either is missing.
+func (d *plotLayout) band(i int, s Series) {
+	l := d.area.Lanes[i]
+	at := func(x, v float64) pen.Pt {
+		return pen.Pt{X: d.area.XAt(x), Y: max(l.Y, min(l.Y+l.H, d.area.YAt(i, v)))}
+	}
+	var upper, lower []pen.Pt
+	flush := func() {
+		if len(upper) > 1 {
+			for j := len(lower) - 1; j >= 0; j-- {
+				upper = append(upper, lower[j])
+			}
+			d.p.Polyline(upper, true, faded(d.pal.Color(s.Role), bandTint), pen.Stroke{})
+		}
+		upper, lower = nil, nil
+	}
+	for j := range min(len(s.X), len(s.Y), len(s.Base)) {
+		if x := s.X[j]; !finite(x) || !finite(s.Y[j]) || !finite(s.Base[j]) || x < d.area.From || x > d.area.To {
+			flush()
+			continue
+		}
+		upper, lower = append(upper, at(s.X[j], s.Y[j])), append(lower, at(s.X[j], s.Base[j]))
+	}
+	flush()
+}
+
+// bandTint is how strongly a band is tinted, of 255.
+const bandTint = 80
 
 // dash returns the pattern of series n: the one asked for, else, if several
 // share the lane and none asks, one by its position.

@@ -48,8 +48,12 @@ func (d *plotLayout) legend(i int) {
 	for n, e := range at {
 		s := d.Lanes[i].Series[n]
 		x, y := d.area.X+e.x, top+legendRow*(float64(e.row)+0.5)
-		pen.Line(d.p, pen.Pt{X: x, Y: y}, pen.Pt{X: x + legendSwatch, Y: y},
-			pen.Stroke{W: 2, C: d.pal.Color(s.Role), Dash: d.Lanes[i].dash(n)})
+		if s.Base != nil {
+			d.p.Polyline([]pen.Pt{{X: x, Y: y - 4}, {X: x + legendSwatch, Y: y - 4}, {X: x + legendSwatch, Y: y + 4}, {X: x, Y: y + 4}}, true, faded(d.pal.Color(s.Role), bandTint), pen.Stroke{})
+		} else {
+			pen.Line(d.p, pen.Pt{X: x, Y: y}, pen.Pt{X: x + legendSwatch, Y: y},
+				pen.Stroke{W: 2, C: d.pal.Color(s.Role), Dash: d.Lanes[i].dash(n)})
+		}
 		d.p.Text(pen.Pt{X: x + legendSwatch + 6, Y: y + capHalf*smallSize}, e.text, smallSize, d.pal.Ink, pen.Left, false)
 	}
 }

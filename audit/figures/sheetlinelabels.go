@@ -49,7 +49,7 @@ func (s *Sheet) weight(n int) float64 {
 	w := 0.0
 	for _, e := range s.nets[n].ends {
 		switch s.parts[e.part].block.Kind {
-		case "pump", "cylinder", "motor", "charge_pump":
+		case "pump", "switched_machine", "cylinder", "motor", "charge_pump":
 			w += 2
 		case "valve":
 			w++
@@ -113,7 +113,7 @@ func (s *Sheet) endWeight(st *stretch) float64 {
 			continue
 		}
 		switch s.parts[e.part].block.Kind {
-		case "pump", "cylinder", "motor", "charge_pump":
+		case "pump", "switched_machine", "cylinder", "motor", "charge_pump":
 			return 3
 		}
 	}

@@ -16,39 +16,40 @@ var telling = map[string][]struct {
 	pattern string
 	keys    []string
 }{
-	"pressure_source": {{"%", []string{"pressure"}}},
-	"electric_motor":  {{"%", []string{"rated_power"}}},
-	"engine":          {{"%", []string{"rated_power"}}},
-	"converter":       {{"%", []string{"rated_power"}}},
-	"pump":            {{"% · %", []string{"displacement", "set_pressure"}}, {"% · %", []string{"displacement", "power_limit"}}, {"%", []string{"displacement"}}},
-	"charge_pump":     {{"% · %", []string{"displacement", "charge"}}},
-	"motor":           {{"%", []string{"displacement"}}},
-	"cylinder":        {{"%/% × %", []string{"bore", "rod", "stroke"}}, {"%/%", []string{"bore", "rod"}}},
-	"valve":           {{"%", []string{"nominal_flow"}}},
-	"relief":          {{"%", []string{"set"}}, {"%", []string{"crack"}}},
-	"check":           {{"%", []string{"opens"}}},
-	"pilot_check":     {{"1 : %", []string{"pilot_ratio"}}},
-	"counterbalance":  {{"%", []string{"setting"}}},
-	"compensator":     {{"%", []string{"drop"}}},
-	"unloading_pilot": {{"%", []string{"setting"}}},
-	"orifice":         {{"ø %", []string{"diameter"}}, {"%", []string{"nominal_flow"}}},
-	"line":            {{"% × %", []string{"diameter", "length"}}},
-	"double_rod":      {{"%/% × %", []string{"bore", "rod", "stroke"}}, {"%/%", []string{"bore", "rod"}}},
-	"plunger":         {{"ø %", []string{"diameter"}}},
-	"accumulator":     {{"% · %", []string{"volume", "precharge"}}},
-	"unloading":       {{"% / %", []string{"unloads", "loads"}}},
-	"flywheel":        {{"%", []string{"inertia"}}},
-	"reducing":        {{"%", []string{"set"}}},
-	"sequence":        {{"%", []string{"set"}}},
-	"flow_control":    {{"%", []string{"set_flow"}}},
-	"flow_control_3":  {{"%", []string{"set_flow"}}},
-	"throttle_check":  {{"%", []string{"nominal_flow"}}},
-	"section_6_3":     {{"%", []string{"nominal_flow"}}},
-	"flow_divider":    {{"%", []string{"displacement"}}},
-	"gearbox":         {{"i = %", []string{"ratio"}}},
-	"flushing":        {{"%", []string{"opens"}}},
-	"cooler":          {{"%", []string{"nominal_flow"}}},
-	"filter":          {{"%", []string{"nominal_flow"}}},
+	"pressure_source":  {{"%", []string{"pressure"}}},
+	"electric_motor":   {{"%", []string{"rated_power"}}},
+	"engine":           {{"%", []string{"rated_power"}}},
+	"converter":        {{"%", []string{"rated_power"}}},
+	"pump":             {{"% · %", []string{"displacement", "set_pressure"}}, {"% · %", []string{"displacement", "power_limit"}}, {"%", []string{"displacement"}}},
+	"charge_pump":      {{"% · %", []string{"displacement", "charge"}}},
+	"switched_machine": {{"% · %", []string{"displacement", "set_pressure"}}, {"%", []string{"displacement"}}},
+	"motor":            {{"%", []string{"displacement"}}},
+	"cylinder":         {{"%/% × %", []string{"bore", "rod", "stroke"}}, {"%/%", []string{"bore", "rod"}}},
+	"valve":            {{"%", []string{"nominal_flow"}}},
+	"relief":           {{"%", []string{"set"}}, {"%", []string{"crack"}}},
+	"check":            {{"%", []string{"opens"}}},
+	"pilot_check":      {{"1 : %", []string{"pilot_ratio"}}},
+	"counterbalance":   {{"%", []string{"setting"}}},
+	"compensator":      {{"%", []string{"drop"}}},
+	"unloading_pilot":  {{"%", []string{"setting"}}},
+	"orifice":          {{"ø %", []string{"diameter"}}, {"%", []string{"nominal_flow"}}},
+	"line":             {{"% × %", []string{"diameter", "length"}}},
+	"double_rod":       {{"%/% × %", []string{"bore", "rod", "stroke"}}, {"%/%", []string{"bore", "rod"}}},
+	"plunger":          {{"ø %", []string{"diameter"}}},
+	"accumulator":      {{"% · %", []string{"volume", "precharge"}}},
+	"unloading":        {{"% / %", []string{"unloads", "loads"}}},
+	"flywheel":         {{"%", []string{"inertia"}}},
+	"reducing":         {{"%", []string{"set"}}},
+	"sequence":         {{"%", []string{"set"}}},
+	"flow_control":     {{"%", []string{"set_flow"}}},
+	"flow_control_3":   {{"%", []string{"set_flow"}}},
+	"throttle_check":   {{"%", []string{"nominal_flow"}}},
+	"section_6_3":      {{"%", []string{"nominal_flow"}}},
+	"flow_divider":     {{"%", []string{"displacement"}}},
+	"gearbox":          {{"i = %", []string{"ratio"}}},
+	"flushing":         {{"%", []string{"opens"}}},
+	"cooler":           {{"%", []string{"nominal_flow"}}},
+	"filter":           {{"%", []string{"nominal_flow"}}},
 }
 
 // value is the setting or size that tells most of a block, "" if it has none.
@@ -131,7 +132,7 @@ func (p *part) isCylinder() bool {
 func (p *part) varies() bool {
 	control := p.block.Word("control")
 	switch p.block.Kind {
-	case "pump", "motor":
+	case "pump", "switched_machine", "motor":
 		return p.block.Word("follows") != "" || control != "" && control != "fixed"
 	case "electric_motor":
 		return p.block.Word("follows") != "" || control == "commanded"

@@ -38,6 +38,7 @@ func (l *layout) energy() {
 			l.table(fromReport(c.Losses))
 			l.table(fromReport(c.States))
 		}
+		l.services(i)
 		for _, d := range c.Duties {
 			for _, of := range []audit.Table{d.Losses, d.Work, d.Gates, d.Measured} {
 				if t := fromReport(of); len(t.rows) > 0 {

@@ -1,0 +1,74 @@
+package audit
+
+import (
+	"math"
+
+	"barlitre/circuit"
+)
+
+// Exchange is the energy that machines on one shaft pass to one another over a cycle: what some give to the shaft and
+// others take from it at the same instant,
+//
+//	P = min(Σ max(P_i, 0), Σ max(−P_i, 0))
+//
+// with P_i the power that machine i takes from the shaft. It never leaves the circuit, so it stands on no side of the balance:
+// neither supply nor work nor loss. What it costs is in the losses of the machines it passes.
+type Exchange struct {
+	Shaft  string
+	Blocks []string
+	Energy float64 // J
+}
+
+// exchanges is the receiver that adds them up, trapezoid rule.
+type exchanges struct {
+	groups []circuit.ShaftGroup
+	sum    []float64
+	last   []float64
+	t      float64
+	begun  bool
+}
+
+func newExchanges(c *circuit.Compiled) *exchanges {
+	g := c.ShaftGroups()
+	return &exchanges{groups: g, sum: make([]float64, len(g)), last: make([]float64, len(g))}
+}
+
+// Sample takes one time step.
+func (x *exchanges) Sample(s *circuit.Sample) error {
+	dt := s.T - x.t
+	if !x.begun {
+		dt = 0
+	}
+	x.t, x.begun = s.T, true
+	for i, g := range x.groups {
+		taken, given := 0.0, 0.0
+		for _, k := range g.Signals {
+			p := s.Signals[k]
+			taken, given = taken+math.Max(p, 0), given+math.Max(-p, 0)
+		}
+		now := math.Min(taken, given)
+		x.sum[i] += dt * (now + x.last[i]) / 2
+		x.last[i] = now
+	}
+	return nil
+}
+
+// list returns those where something passed, as the mean of the cycles.
+func (x *exchanges) list(cycles int) []Exchange {
+	var out []Exchange
+	for i, g := range x.groups {
+		if x.sum[i] > 0 {
+			out = append(out, Exchange{g.Name, g.Blocks, x.sum[i] / float64(max(cycles, 1))})
+		}
+	}
+	return out
+}
+
+// Exchanged returns what machines pass to one another through shafts over a cycle [J].
+func (d *DutyRun) Exchanged() float64 {
+	sum := 0.0
+	for _, e := range d.Exchanges {
+		sum += e.Energy
+	}
+	return sum
+}
