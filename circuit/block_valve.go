@@ -301,6 +301,9 @@ func (m *valveModel) eval(e *eval) {
 		// Off the centre the row is a flow, q = u·√…, so that closing the valve is no singular case.
 		full, slope := br.t.flow(e.val(br.a) - e.val(br.b))
 		e.add(q, v-u*full)
+		if e.skip == 0 {
+			slope = br.t.chord(e.val(br.a)-e.val(br.b), full, v/u, slope)
+		}
 		e.d(q, q, 1)
 		e.d(q, br.a, -u*slope)
 		e.d(q, br.b, u*slope)

@@ -170,8 +170,8 @@ func (r *run) Eval(x, g []float64, j *balance.Slopes) {
 	clear(e.gfix)
 	for _, n := range r.leaky {
 		k := r.step.restK[n]
-		g[n] += leak*x[n] + k*(x[n]-r.step.rest[n])
-		e.d(n, n, leak+k)
+		g[n] += r.leak*x[n] + k*(x[n]-r.step.rest[n])
+		e.d(n, n, r.leak+k)
 	}
 	for i := range r.free {
 		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
@@ -214,6 +214,19 @@ func (t throat) flow(dp float64) (q, dq float64) {
 	q = dp * math.Sqrt(2*t.k2/(math.Sqrt(d*d+4*dp*dp)+d))
 	h := math.Sqrt(q*q + t.ql2)
 	return q, t.k2 / (h + q*q/h)
+}
+
+// chord is the slope that leads from a drop with its flow to the drop that a flow q
+// belongs to, where the two lie far apart: at flows near zero the tangent, which a root
+// makes flat, would lead far past it. Elsewhere it is the tangent.
+func (t throat) chord(dp, full, q, tangent float64) float64 {
+	to, _ := t.at(q)
+	if d := dp - to; math.Abs(d) > 0.5*math.Max(math.Abs(dp), math.Abs(to)) && d != 0 {
+		if s := (full - q) / d; s > 0 {
+			return s
+		}
+	}
+	return tangent
 }
 
 // model is a block as the balance sees it. One model serves one run at a time.
@@ -288,6 +301,13 @@ type axisStep struct {
 func (s *step) restAt(node slot, pressure float64) {
 	if node >= 0 {
 		s.rest[node], s.restK[node] = pressure/s.pScale, restLeak
+	}
+}
+
+// noRest takes what restAt gave, once the balance is found.
+func (s *step) noRest(node slot) {
+	if node >= 0 {
+		s.restK[node] = 0
 	}
 }
 

@@ -63,13 +63,15 @@ type run struct {
 	topLoad  []float64
 	params   []float64
 	switches []switching
-	haste    float64 // by how much axes move faster than asked; see approach
+	leak     float64   // of each node to tank; see Ease
+	behind   []float64 // demand of axes that lagged behind it at the last point, else 0
+	haste    float64   // by how much axes move faster than asked; see approach
 	scales
 	hot
 }
 
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
-	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params}
+	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params, leak: leak}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
 	x, fix := make([]float64, c.n), make([]float64, c.nfix)
 	r.ev = eval{x: x, fix: fix, gfix: make([]float64, c.nfix)}
@@ -93,6 +95,7 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 	}
 	r.volumes = make([]float64, len(c.axes))
 	r.slip = make([]float64, len(c.axes))
+	r.behind = make([]float64, len(c.axes))
 	r.topLoad = make([]float64, len(c.axes))
 	for i, m := range c.movers {
 		r.volumes[i] = 1
@@ -180,6 +183,10 @@ func (r *run) solve(k int, share float64, x, good []float64, warm bool) balance.
 	return res
 }
 
+// Ease makes the circuit leakier by a share of 1e-3 of its flow scale at 100 bar: what
+// hangs on the least of leaks then hangs on more.
+func (r *run) Ease(e float64) { r.leak = leak + 1e-3*e }
+
 // approach solves a step that withstood all else by way of easier ones: the axes
 // move faster at first, where throttling edges are well open, and slow down to
 // what is asked in steps of half an order of magnitude.
@@ -249,7 +256,7 @@ func (r *run) begin(k int, share float64) {
 			a.flow += r.slip[i] * math.Abs(a.load) / r.volumes[i] / r.scales.q
 		}
 		s.standing = s.standing && a.standing
-		if m := r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad {
+		if m := r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad && a.demand*r.behind[i] <= 0 {
 			s.x[m.speed] = a.scaledDemand
 			if !a.standing { // else the active set must first find out which way it rubs
 				s.x[m.sigma] = sign(a.scaledDemand)
@@ -385,8 +392,14 @@ func (r *run) report(k int, unbalanced bool) {
 	r.axesNow(k, unbalanced)
 }
 
-// voids finds what is missing at nodes that rest on the floor.
+// voids finds what is missing at nodes that rest on the floor, and books what the leak
+// of nodes takes: nothing that counts, but for pressures far beyond any rating.
 func (r *run) voids(b *booking) {
+	leaked := 0.0
+	for _, n := range r.leaky {
+		leaked += (leak*b.x[n] + r.step.restK[n]*(b.x[n]-r.step.rest[n])) * b.x[n]
+	}
+	b.pow[r.Compiled.void] += b.watts(leaked)
 	for i, n := range r.nodes {
 		r.sample.Void[i] = 0
 		if n.slot < 0 || n.pilot || b.x[n.slot] > r.solver.Lo[n.slot]+1e-9 {
@@ -411,6 +424,10 @@ func (r *run) axesNow(k int, unbalanced bool) {
 			now.Demand = a.speed
 		}
 		s.Axes[i] = now
+		r.behind[i] = 0
+		if now.Demand*(now.Demand-now.Speed) > 1e-3*now.Demand*now.Demand {
+			r.behind[i] = now.Demand
+		}
 		s.Driving = s.Driving || (now.Load*now.Speed < 0 && math.Abs(now.Speed) > stillSpeed)
 		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > HoldShare*r.topLoad[i])
 		r.state.travel[i] += dt * (r.state.speed[i] + now.Speed) / 2
