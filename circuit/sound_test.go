@@ -2,6 +2,7 @@ package circuit
 
 import (
 	"context"
+	"math/rand/v2"
 	"os"
 	"strconv"
 	"sync"
@@ -12,6 +13,8 @@ import (
 type tally struct {
 	sync.Mutex
 	circuits, least, most, blocks, steps, unsolved, fallbacks, wrong, with int
+
+	refused [10]int // by kind of defect
 }
 
 // TestRandomPlants balances random sound circuits of 3 to 40 blocks with parameters over
@@ -34,12 +37,22 @@ func TestRandomPlants(t *testing.T) {
 		go func() {
 			defer wait.Done()
 			for seed := first + part; seed < first+count && all.wrong < 12; seed += 2 {
-				runPlant(t, uint64(seed), all)
+				if seed%10 == 9 {
+					runSick(t, uint64(seed), all)
+				} else {
+					runPlant(t, uint64(seed), all)
+				}
 			}
 		}()
 	}
 	wait.Wait()
 	t.Logf("%d circuits of %d to %d blocks (%d in all), %d steps, %d by fall-backs, %d unsolved in %d circuits, %d wrong", all.circuits, all.least, all.most, all.blocks, all.steps, all.fallbacks, all.unsolved, all.with, all.wrong)
+	for i, n := range all.refused {
+		t.Logf("%d refused: %s", n, defects[i].name)
+		if n == 0 {
+			t.Errorf("no circuit with %s", defects[i].name)
+		}
+	}
 	if all.unsolved*10000 > all.steps {
 		t.Errorf("%d of %d steps unsolved, at most 1 in 10000 may be", all.unsolved, all.steps)
 	}
@@ -71,4 +84,31 @@ func runPlant(t *testing.T, seed uint64, all *tally) {
 		all.wrong++
 		t.Errorf("seed %d wrong: %v\n%s", seed, verdict, text)
 	}
+}
+
+// runSick plants a defect, each kind in turn, and wants it refused.
+func runSick(t *testing.T, seed uint64, all *tally) {
+	text, axes, d := grow(seed)
+	s := &sick{Rand: rand.New(rand.NewPCG(seed, 41)), c: build(t, text), axes: axes, d: d}
+	s.add = func(row string) {
+		more := build(t, row)
+		s.c.Blocks, s.c.Lines = append(s.c.Blocks, more.Blocks...), append(s.c.Lines, more.Lines...)
+		text += row + "\n"
+	}
+	kind, block := int(seed/10)%len(defects), ""
+	for ; block == ""; kind = (kind + 1) % len(defects) {
+		block = defects[kind].plant(s)
+		if block != "" {
+			break
+		}
+	}
+	k, found := Compile(s.c, s.axes, s.d)
+	all.Lock()
+	defer all.Unlock()
+	if k == nil && named(found, block, defects[kind].says) {
+		all.refused[kind]++
+		return
+	}
+	all.wrong++
+	t.Errorf("seed %d: %s at %s is not refused by name: %v\n%s", seed, defects[kind].name, block, found, text)
 }
