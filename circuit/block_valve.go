@@ -328,6 +328,7 @@ func (m *valveModel) eval(e *eval) {
 		if e.plain() {
 			continue
 		}
+		slope = br.t.chord(e.val(br.a)-e.val(br.b), full, v/u, slope)
 		e.d(q, q, 1)
 		e.d(q, br.a, -u*slope)
 		e.d(q, br.b, u*slope)

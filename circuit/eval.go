@@ -184,8 +184,8 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	for _, at := range r.found {
 		n := at.slot
 		p, k := x[n], restK[n]
-		g[n] += leak*p + k*(p-rest[n])
-		e.d(n, n, leak+k)
+		g[n] += r.leak*p + k*(p-rest[n])
+		e.d(n, n, r.leak+k)
 	}
 	for i := range r.free {
 		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
@@ -237,6 +237,22 @@ func (t *throat) flow(dp float64) (q, dq float64) {
 	s := math.Sqrt(laminar*laminar + 4*dp*dp)
 	h := math.Sqrt(0.5 * t.k2 * (s + laminar))
 	return dp * t.k2 / h, h / s
+}
+
+// chord is the slope that leads from a drop with its flow to the drop that a flow q
+// belongs to, where the two lie far apart: at flows near zero the tangent, which a root
+// makes flat, would lead far past it. Elsewhere it is the tangent.
+func (t *throat) chord(dp, full, q, tangent float64) float64 {
+	if r := q / full; r > 0.75 && r < 1.33 { // so are the drops not far apart
+		return tangent
+	}
+	to, _ := t.at(q)
+	if d := dp - to; math.Abs(d) > 0.5*math.Max(math.Abs(dp), math.Abs(to)) && d != 0 {
+		if s := (full - q) / d; s > 0 {
+			return s
+		}
+	}
+	return tangent
 }
 
 // model is a block as the balance sees it. One model serves one run at a time.
@@ -313,6 +329,13 @@ type axisStep struct {
 func (s *step) restAt(node slot, pressure float64) {
 	if node >= 0 {
 		s.rest[node], s.restK[node] = pressure/s.pScale, restLeak
+	}
+}
+
+// noRest takes what restAt gave, once the balance is found.
+func (s *step) noRest(node slot) {
+	if node >= 0 {
+		s.restK[node] = 0
 	}
 }
 

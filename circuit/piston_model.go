@@ -159,6 +159,8 @@ func (m *pistonModel) ends(s *step, a *axisStep) {
 		return v
 	}
 	m.lo, m.hi = -room(x+slack), room(m.way+slack-x)
+	// Bounds so near count as much as a force, else they would hide what is left of it.
+	s.solver.Weight[m.v] = 1 / math.Max(touchFlow, math.Min(1, math.Min(m.hi, -m.lo)))
 	// Near an end the row of σ is as steep as the speed left is small.
 	if m.rests > 0 {
 		m.steep = 1 / gripFlow
@@ -252,7 +254,9 @@ func (m *pistonModel) eval(e *eval) {
 func (m *pistonModel) book(k *booking) {
 	vs := k.val(m.v)
 	if k.step.axes[m.axis].standing && math.Abs(vs) < heldFlow {
-		vs = 0 // what the resting leak lets through is no motion
+		vs = 0 // what the resting leak lets through is no motion, and nothing is booked for it
+		k.step.noRest(m.pA)
+		k.step.noRest(m.pB)
 	}
 	v := vs / m.scale
 	viscous := m.visc1 * vs

@@ -70,13 +70,15 @@ type run struct {
 	params   []float64
 	strokes  []stroke
 	switches []switching
-	haste    float64 // by how much axes move faster than asked; see approach
+	leak     float64   // of each node to tank; see Ease
+	behind   []float64 // demand of axes that lagged behind it at the last point, else 0
+	haste    float64   // by how much axes move faster than asked; see approach
 	scales
 	hot
 }
 
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
-	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params}
+	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params, leak: leak}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
 	r.ev = eval{known: slot(c.nfix), all: make([]float64, c.nfix+c.n), rows: r.solver.Border(c.nfix)}
 	r.step = step{axes: make([]axisStep, len(c.axes)), commands: s.Commands, atRest: c.circuit.PumpAtRest, solver: r.solver,
@@ -104,6 +106,7 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 	}
 	r.volumes = make([]float64, len(c.axes))
 	r.slip = make([]float64, len(c.axes))
+	r.behind = make([]float64, len(c.axes))
 	for i, m := range c.movers {
 		r.volumes[i] = 1
 		if m.volume != nil {
@@ -195,6 +198,10 @@ func (r *run) solve(k int, share float64, x, good []float64, warm bool) balance.
 	return res
 }
 
+// Ease makes the circuit leakier by a share of 1e-3 of its flow scale at 100 bar: what
+// hangs on the least of leaks then hangs on more.
+func (r *run) Ease(e float64) { r.leak = leak + 1e-3*e }
+
 // approach solves a step that withstood all else by way of easier ones: the axes
 // move faster at first, where throttling edges are well open, and slow down to
 // what is asked in steps of half an order of magnitude.
@@ -264,7 +271,7 @@ func (r *run) begin(k int, share float64) {
 			a.flow += r.slip[i] * math.Abs(a.load) / r.volumes[i] / r.scales.q
 		}
 		s.standing = s.standing && a.standing
-		if m := &r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad {
+		if m := &r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad && a.demand*r.behind[i] <= 0 {
 			s.x[m.speed] = a.scaledDemand
 			if !a.standing { // else the active set must first find out which way it rubs
 				s.x[m.sigma] = sign(a.scaledDemand)
@@ -400,8 +407,16 @@ func (r *run) report(k int, unbalanced bool) {
 	r.axesNow(k, unbalanced)
 }
 
-// voids finds what is missing at nodes that rest on the floor.
+// voids finds what is missing at nodes that rest on the floor, and books what the leak
+// of nodes takes: nothing that counts, but for pressures far beyond any rating.
 func (r *run) voids(b *booking) {
+	leaked := 0.0
+	for _, at := range r.found {
+		n := int(at.slot)
+		p := b.val(at.slot)
+		leaked += (leak*p + r.step.restK[n]*(p-r.step.rest[n])) * p
+	}
+	b.pow[r.Compiled.void] += b.watts(leaked)
 	for _, n := range r.found {
 		r.sample.Void[n.node] = 0
 		if b.val(n.slot) > r.solver.Lo[n.slot]+1e-9 {
@@ -426,6 +441,10 @@ func (r *run) axesNow(k int, unbalanced bool) {
 			now.Demand = a.speed
 		}
 		s.Axes[i] = now
+		r.behind[i] = 0
+		if now.Demand*(now.Demand-now.Speed) > 1e-3*now.Demand*now.Demand {
+			r.behind[i] = now.Demand
+		}
 		s.Driving = s.Driving || (now.Load*now.Speed < 0 && math.Abs(now.Speed) > stillSpeed)
 		s.Holding = s.Holding || (s.Standing && math.Abs(now.Load) > HoldShare*r.series.Axes[i].TopLoad)
 		r.state.travel[i] += dt * (r.state.speed[i] + now.Speed) / 2

@@ -69,13 +69,18 @@ func (s *Solver) again(p Problem, x []float64, norm float64) bool {
 // tol grows with the size of the unknowns, as what rounding leaves of a residual
 // does, but not without end: an unknown that runs away is no solution.
 func (s *Solver) tol(x []float64) float64 {
+	return Tol * (1 + 0.1*math.Min(s.largest(x), 1e3))
+}
+
+// largest is the size of the largest unknown.
+func (s *Solver) largest(x []float64) float64 {
 	m := 0.0
 	for i, v := range x[:s.n] {
 		if v := math.Abs(v); v > m && !s.Long[i] {
 			m = v
 		}
 	}
-	return Tol * (1 + 0.1*math.Min(m, 1e3))
+	return m
 }
 
 // mostTol is the largest that tol returns.
@@ -83,7 +88,7 @@ const mostTol = 101 * Tol
 
 // rounded reports whether the residual is within tolerance of what rounding of
 // the unknowns can leave in steep rows: rows are weighed by their largest slope,
-// from 10,000 up.
+// from 10,000 up, more where unknowns are so large that they are not known better.
 func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
 	if !s.now.slopes {
 		s.norm(p, x, a, true)
@@ -94,10 +99,10 @@ func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
 		i := s.j.row[k+firstEntry]
 		steep[i] = max(steep[i], math.Abs(v))
 	}
-	sum := 0.0
+	sum, fine := 0.0, 1e-4*max(1, s.largest(x)/10)
 	for i, r := range s.r {
 		if _, _, wg := a.row(x[i], s.g[i], s.Lo[i], s.Hi[i], s.Weight[i]); wg != 0 {
-			r /= max(1, 1e-4*steep[i])
+			r /= max(1, fine*steep[i])
 		}
 		sum += r * r
 	}

@@ -9,6 +9,9 @@ type Problem interface {
 	Eval(x, g []float64, j *Slopes)
 }
 
+// Mild is a problem that can be put more mildly, from 1 down to 0, the problem itself.
+type Mild interface{ Ease(e float64) }
+
 // Rung names the part of the ladder that solved a step.
 type Rung int
 
@@ -18,6 +21,7 @@ const (
 	WarmSmooth                // Fischer-Burmeister from the step before
 	Cold                      // Newton from a cold start
 	ColdSmooth                // Fischer-Burmeister from a cold start
+	Eased                     // by way of a milder problem
 	WarmTransient             // pseudo-transient from the step before
 	ColdTransient             // pseudo-transient from a cold start
 	Levels                    // cold starts at other levels
@@ -26,7 +30,7 @@ const (
 
 var rungNames = [...]string{
 	"Newton from the step before", "smoothed Newton from the step before", "Newton from a cold start",
-	"smoothed Newton from a cold start", "pseudo-transient from the step before",
+	"smoothed Newton from a cold start", "by way of a leakier circuit", "pseudo-transient from the step before",
 	"pseudo-transient from a cold start", "cold starts at other pressure levels", "failed",
 }
 
@@ -71,6 +75,7 @@ type Solver struct {
 	rows, g         []float64 // g is the end of rows
 	r, dx, xt, best []float64
 	start, anchor   []float64
+	mark            []float64
 	rim, steep      []float64 // of a dense step: weights of bound and G in each row
 	place, free     []int32   // and where an unknown is in it, −1 on a bound; which are in it
 	hist            [5]float64
@@ -90,7 +95,7 @@ type point struct {
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
 	s := &Solver{n: n, f: newLU(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
-	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.rim, &s.steep} {
+	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep} {
 		*p = make([]float64, n)
 	}
 	s.place, s.free = make([]int32, n), make([]int32, 0, n)
@@ -163,8 +168,10 @@ func (s *Solver) ladder(p Problem, x []float64, total, levels int, cold func(lev
 	transient := func(d0 float64) func() (bool, int) {
 		return func() (bool, int) { return s.transient(p, x, d0) }
 	}
+	eased := func() (bool, int) { return s.eased(p, x) }
 	for _, l := range []rung{
 		{WarmSmooth, -1, smooth(40)}, {Cold, 0, newton(30)}, {ColdSmooth, 0, smooth(60)},
+		{Eased, -1, eased}, {Eased, 0, eased},
 		{WarmTransient, -1, transient(1)}, {ColdTransient, 0, transient(10)},
 	} {
 		s.restart(x, l.from, cold)
@@ -173,7 +180,7 @@ func (s *Solver) ladder(p Problem, x []float64, total, levels int, cold func(lev
 		}
 	}
 	for level := 1; level < levels; level++ {
-		for _, run := range []func() (bool, int){smooth(60), transient(10), transient(1000)} {
+		for _, run := range []func() (bool, int){smooth(60), eased, transient(10), transient(1000)} {
 			s.restart(x, level, cold)
 			if res, ok := try(Levels, run); ok {
 				return res
@@ -202,6 +209,39 @@ func (s *Solver) smooth(p Problem, x []float64, maxIt int) (bool, int) {
 	}
 	ok, more := s.newton(p, x, 8)
 	return ok, it + more
+}
+
+// eased solves milder problems first, each from the one before. Of what rescues a
+// step it rescues most: pressures that hang on leaks alone are found on the way.
+func (s *Solver) eased(p Problem, x []float64) (bool, int) {
+	m, ok := p.(Mild)
+	if !ok {
+		return false, 0
+	}
+	defer m.Ease(0)
+	total := 0
+	for e := 1.0; ; e /= 10 {
+		if e < 1e-7 {
+			e = 0
+		}
+		m.Ease(e)
+		copy(s.mark, x[:s.n])
+		ok, it := s.newton(p, x, 15)
+		total += it
+		if !ok {
+			copy(x, s.mark)
+			ok, it = s.smooth(p, x, 60)
+			total += it
+		}
+		if !ok {
+			copy(x, s.mark)
+			ok, it = s.transient(p, x, 1)
+			total += it
+		}
+		if !ok || e == 0 {
+			return ok, total
+		}
+	}
 }
 
 // transient marches x' = −G implicitly, with steps that grow as the residual
