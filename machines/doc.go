@@ -27,6 +27,7 @@
 //	Cf, Cv, Ch    pressure, viscous and w² friction coefficients, –
 //	Tc, K         constant torque, N·m, compression flow factor, –
 //	μ, ν, ρ, B    dynamic viscosity, Pa·s, kinematic, m²/s, density, kg/m³, bulk modulus, Pa
+//	x, N, Vc      fraction of cylinders at work −1..1, their number, swept volume of one, m³
 //	θ             temperature, K
 //	f, ε, Re, ζ   friction factor (Darcy), roughness, m, Reynolds number, loss coefficient of fittings
 //
