@@ -45,7 +45,13 @@ func serviceTable(p printer, c *CircuitRun) Table {
 	row("low to high", func(s *Service) string {
 		return orDash(s.MeanLost[0], units.Power, p) + " to " + orDash(s.MeanLost[2], units.Power, p)
 	})
-	row("mean loss of the machine beside it", func(s *Service) string { return orDash(s.Beside.LostOther/s.Beside.Seconds, units.Power, p) })
+	row("beside it, a swashplate machine of", func(s *Service) string {
+		if s.Fitted {
+			return "measured points"
+		}
+		return "usual losses"
+	})
+	row("mean loss of that", func(s *Service) string { return orDash(s.Beside.LostOther/s.Beside.Seconds, units.Power, p) })
 	row("advantage gone at an idle loss of", func(s *Service) string { return s.goneText(p.system) })
 	t.Note = serviceNote(c.Services)
 	return t
@@ -53,7 +59,7 @@ func serviceTable(p printer, c *CircuitRun) Table {
 
 // serviceNote says what the figures rest on.
 func serviceNote(all []*Service) string {
-	text := "Beside each stands " + all[0].Other + " of the same displacement, delivering the same flow at the same pressure and speed at every time step."
+	text := "Beside each stands a swashplate machine of the same displacement, delivering the same flow at the same pressure and speed at every time step."
 	for _, s := range all {
 		if s.Assumed {
 			text += " Idle and switching losses of the switched machine are assumed (low, likely, high); no open measurement of them is known to us."

@@ -40,7 +40,7 @@ type Ends struct{ Loss, Event float64 }
 // an axial piston machine of the best point of its family. Both have the displacement of the service.
 func otherMachine(b *circuit.Block, d float64) (law machines.Displacement, name string, fitted bool) {
 	if b.Fit != nil {
-		return b.Fit.Law.Sized(d), "the swashplate machine of " + b.Word("points"), true
+		return b.Fit.Law.Sized(d), "a swashplate machine fitted to the points of " + b.Word("points"), true
 	}
 	f, err := machines.FindFamily("axial piston")
 	if err == nil {

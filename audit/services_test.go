@@ -2,7 +2,10 @@ package audit
 
 import (
 	"context"
+	"fmt"
 	"math"
+	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 
@@ -146,7 +149,7 @@ func TestServiceBesideMeasuredPoints(t *testing.T) {
 		b.Words["points"] = circuit.Word{Text: "bench.csv"}
 	})
 	v := s.Circuits[1].Services[0]
-	if !v.Fitted || !strings.Contains(v.Verdict(units.Metric), "the swashplate machine of bench.csv") {
+	if !v.Fitted || !strings.Contains(v.Verdict(units.Metric), "a swashplate machine fitted to the points of bench.csv") {
 		t.Errorf("%+v", v.Verdict(units.Metric))
 	}
 	if o := v.Beside.Other; o.D != v.Law.D || o.Cf != law.Cf || math.Abs(o.Tc-3*64./57) > 1e-9 {
@@ -160,5 +163,44 @@ func TestServiceBesideMeasuredPoints(t *testing.T) {
 		if !(c.Switched[0][i] >= c.Switched[1][i] && c.Switched[1][i] >= c.Switched[2][i]) || c.Switched[0][i] > 1 || c.Other[i] > 1 {
 			t.Errorf("at %g m³/s: %g, %g, %g beside %g", c.Flow[i], c.Switched[0][i], c.Switched[1][i], c.Switched[2][i], c.Other[i])
 		}
+	}
+}
+
+// The file of points beside the audit file is read with the displacement of the machine it was measured on.
+func TestPointsOfAnotherMachine(t *testing.T) {
+	dir := t.TempDir()
+	data, err := samples.Read("transfer-station.yaml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	text := strings.Replace(string(data), "cylinders: {value: 8, origin: data sheet}", "cylinders: {value: 8, origin: data sheet}\n      points: bench.csv\n      points_displacement: 57 cm3/rev\n      points_viscosity: 30 mPa s", 1)
+	law := machines.Displacement{D: 57 * units.CubicCentimetrePerRev, Cs: 8e-9, Cf: 0.02, Cv: 5e4, Tc: 2}
+	rows := "speed [rpm],pressure [bar],displacement [cm3/rev],flow [L/min],torque [N m]\n"
+	for _, rpm := range []float64{600, 1000, 1500, 2000} {
+		for _, bar := range []float64{60, 140, 220} {
+			for _, e := range []float64{0.3, 1} {
+				w, dp := rpm*units.RPM, bar*units.Bar
+				rows += fmt.Sprintf("%g,%g,%g,%.9g,%.9g\n", rpm, bar, 57*e, law.Flow(e, w, dp, 0.030, 870, 1.4e9)/units.LitrePerMinute, law.Torque(e, w, dp, 0.030, 870))
+			}
+		}
+	}
+	for name, content := range map[string]string{"a.yaml": text, "bench.csv": rows} {
+		if err := os.WriteFile(filepath.Join(dir, name), []byte(content), 0o600); err != nil {
+			t.Fatal(err)
+		}
+	}
+	f, found := Read(filepath.Join(dir, "a.yaml"))
+	if f == nil || circuit.AnyStops(found) {
+		t.Fatal(found)
+	}
+	b := f.Circuits[1].Block("S1")
+	if b.Fit == nil {
+		t.Fatal("nothing was fitted")
+	}
+	wants(t, "Cs", b.Fit.Law.Cs, law.Cs, 1e-3)
+	wants(t, "Cf", b.Fit.Law.Cf, law.Cf, 1e-3)
+	wants(t, "Cv", b.Fit.Law.Cv, law.Cv, 1e-3)
+	if own, ok := circuit.SwitchedLaw(b); !ok || own.Cs != 5e-9 {
+		t.Errorf("the points of another machine changed the law of the block: %+v", own)
 	}
 }

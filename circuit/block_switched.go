@@ -78,7 +78,7 @@ func switchedParams() []Param {
 // switchedLossParams are those of the law.
 func switchedLossParams() []Param {
 	return []Param{
-		{Key: "displacement", Title: "Displacement", Symbol: "V", Dim: units.DisplacementPerRev, Need: true, Above: true, Max: 0.1, Text: "of all cylinders of this service, a turn"},
+		{Key: "displacement", Title: "Displacement", Symbol: "V", Dim: units.DisplacementPerRev, Need: true, Above: true, Max: 0.02, Text: "of all cylinders of this service, a turn"},
 		{Key: "cylinders", Title: "Cylinders", Symbol: "N", Dim: units.Count, Default: "12", Origin: Assumed, Source: "state those of this service", Min: 1, Max: 1000, Text: "of this service; each makes one stroke a turn"},
 		{Key: "slip", Title: "Slip coefficient", Symbol: "Cs", Dim: units.Ratio, Default: "5e-9", Origin: Assumed, Source: switchedGeneral, Max: 1e-4, Text: "laminar leakage of the working cylinders, of displacement, pressure and 1/viscosity"},
 		{Key: "friction", Title: "Pressure friction", Symbol: "Cf", Dim: units.Ratio, Default: "0.02", Origin: Assumed, Source: switchedGeneral, Max: 0.9, Text: "of the working cylinders, share of their ideal torque"},

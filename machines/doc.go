@@ -28,6 +28,7 @@
 //	Tc            constant torque, N·m
 //	K, Kd         compression of the swept and of the dead volume, –
 //	μ, ν, ρ, B    dynamic viscosity, Pa·s, kinematic, m²/s, density, kg/m³, bulk modulus, Pa
+//	x, N, Vc      fraction of cylinders at work −1..1, their number, swept volume of one, m³
 //	θ             temperature, K
 //	f, ε, Re, ζ   friction factor (Darcy), roughness, m, Reynolds number, loss coefficient of fittings
 //

@@ -25,7 +25,7 @@ func ServiceOf(s *audit.Service, system units.System) (f Service, ok bool) {
 		return f, false
 	}
 	show := func(v float64, d units.Dim) string { return units.Format(v, units.Preferred(d, system), 3) }
-	f.Head = s.Block + " at its mean " + show(c.Pressure, units.Pressure) + " and " + show(c.Speed, units.AngularSpeed) // as a pump
+	f.Head = s.Block + " at its mean " + show(c.Pressure, units.Pressure) + " and " + units.Format(c.Speed, units.Preferred(units.AngularSpeed, system), 4)
 	f.Verdict = s.Verdict(system)
 	flow := units.Preferred(units.Flow, system)
 	x := make([]float64, len(c.Flow))
