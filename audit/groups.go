@@ -68,6 +68,7 @@ func groupRows(base, proposal *CircuitRun) []GroupRow {
 	b, p := base.groupEnergy(), proposal.groupEnergy()
 	var out []GroupRow
 	add := func(name string, before, after float64) {
+		before, after = nothing(before, base.Year.Drawn.Total()), nothing(after, proposal.Year.Drawn.Total())
 		if before != 0 || after != 0 {
 			out = append(out, GroupRow{name, before, after})
 		}

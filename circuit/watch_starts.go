@@ -29,9 +29,25 @@ func (w *Watch) startOf(b *Block) startWatch {
 		}
 	}
 	_, of := netsOf(w.c.circuit)
+	if n := of[PortRef{b.ID, "shaft"}]; n != nil {
+		s.help(w, n)
+	}
 	r := reachOf{w: w, of: of}
 	s.way = [2]float64{r.available(b, "A"), r.available(b, "B")}
 	return s
+}
+
+// help adds the other hydraulic motors on the shaft, taken to stand under the same pressure.
+func (s *startWatch) help(w *Watch, shaft *net) {
+	for _, p := range shaft.ports {
+		o := w.c.circuit.Block(p.Block)
+		if o.ID == s.b.ID || o.Kind != kindHydraulicMotor {
+			continue
+		}
+		s.tau = s.tau*s.D + w.value(o, "starting_torque")*w.value(o, "displacement")
+		s.D += w.value(o, "displacement")
+		s.tau /= s.D // of all together
+	}
 }
 
 // take notes the worst moment at which the axis leaves standstill against its load.
