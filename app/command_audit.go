@@ -163,7 +163,7 @@ func exitOf(s *audit.Solution, path string, errs io.Writer) int {
 		}
 		for _, d := range r.Duties {
 			for _, u := range d.Certificate.Unsolved {
-				fmt.Fprintf(errs, "%s: %s, %s: not balanced at %g s: %s left at %s\n", path, r.Circuit.Name, d.Duty.Name, u.T, u.Residual, u.Where)
+				fmt.Fprintf(errs, "%s: %s, %s: %s\n", path, r.Circuit.Name, d.Duty.Name, u)
 			}
 			if d.Certificate.Unbalanced > 0 {
 				code = worse(code, exitUnbalanced)

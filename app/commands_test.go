@@ -264,3 +264,17 @@ func TestBlocksTellAll(t *testing.T) {
 }
 
 func dutyNamed(name string) *duty.Duty { return &duty.Duty{Name: name} }
+
+// Each wrong circuit is refused by check, with its line and the level.
+func TestCheckRefusesWrongCircuits(t *testing.T) {
+	paths, err := filepath.Glob("../audit/testdata/wrong_circuits/*.yaml")
+	if err != nil || len(paths) < 20 {
+		t.Fatalf("%d files, %v", len(paths), err)
+	}
+	for _, path := range paths {
+		code, out, _ := called("check", path)
+		if code != exitUnsolvable || !strings.Contains(out, path+": cannot be solved") || !strings.Contains(out, ": stops: ") {
+			t.Errorf("%s: code %d\n%s", path, code, out)
+		}
+	}
+}

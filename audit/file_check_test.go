@@ -22,7 +22,7 @@ func TestCheckFile(t *testing.T) {
 		alone     bool // no other finding names the block and the parameter
 	}{
 		{"C1.A - RV1.P", "C1.A - RV9.P", 16, "", "", "no block RV9", false},
-		{"C1.A - RV1.P", "C1.X - RV1.P", 16, "", "", "the ports A and B", false},
+		{"C1.A - RV1.P", "C1.X - RV1.P", 16, "C1", "", "the ports A and B", false},
 		{"bore: 80 mm, ", "", 14, "C1", "bore", "missing", true},
 		{"axis: ram", "axis: arm", 14, "C1", "axis", `no axis "arm"`, true},
 		{"hold: valve", "hold: vavle", 14, "C1", "hold", `"vavle"`, true},

@@ -34,7 +34,8 @@ func (c *CircuitRun) dutyRemarks(d *DutyRun) []circuit.Finding {
 		var at float64
 		if u := d.Certificate.Unsolved; len(u) > 0 {
 			at = u[0].T
-			text += fmt.Sprintf("; the first at %s, where %s is left with %s", seconds(at), u[0].Where, u[0].Residual)
+			text += fmt.Sprintf("; the first at %s, where %s is left with %s after %d ways were tried (the last: %s). Likely cause: %s", seconds(at), u[0].Where, u[0].Residual,
+				len(u[0].Tried), u[0].Tried[len(u[0].Tried)-1], u[0].Cause)
 		}
 		say(circuit.Warns, "", at, "%s", text)
 	}

@@ -53,4 +53,4 @@ func (m *checkModel) eval(e *eval) {
 
 func (m *checkModel) book(k *booking) { k.through(m.in, m.out, k.val(m.q), m.qIn, m.qOut, m.loss) }
 
-func (m *checkModel) cold(s *step, level int, x []float64) { x[m.q] = 0.05 }
+func (m *checkModel) cold(s *step, level int, x []float64) { x[m.q] = m.t.first() }

@@ -66,7 +66,7 @@ func (m *compensatorModel) eval(e *eval) {
 
 func (m *compensatorModel) book(k *booking) { k.through(m.P, m.A, k.val(m.q), m.qP, m.qA, m.loss) }
 
-func (m *compensatorModel) cold(s *step, level int, x []float64) { x[m.q], x[m.z] = 0.05, 0.1 }
+func (m *compensatorModel) cold(s *step, level int, x []float64) { x[m.q], x[m.z] = m.t.first(), 0.1 }
 
 // throttleMax bounds the drop that a compensator may make: 1000 times the
 // pressure scale.

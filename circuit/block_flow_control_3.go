@@ -80,5 +80,5 @@ func (m *flowControl3Model) book(k *booking) {
 
 func (m *flowControl3Model) cold(s *step, level int, x []float64) {
 	m.way.cold(x)
-	x[m.q] = 0.05
+	x[m.q] = m.t.first()
 }

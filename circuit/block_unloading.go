@@ -99,4 +99,4 @@ func (m *unloadingModel) due(k *booking) float64 {
 
 func (m *unloadingModel) toggle(slow []float64) { slow[m.state] = 1 - slow[m.state] }
 
-func (m *unloadingModel) cold(s *step, level int, x []float64) { x[m.qA] = 0.05 }
+func (m *unloadingModel) cold(s *step, level int, x []float64) { x[m.qA] = m.check.first() }

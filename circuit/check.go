@@ -145,16 +145,16 @@ func (k *checker) axisNames() []string {
 func (k *checker) lines() {
 	first := map[PortRef]int{}
 	for _, l := range k.c.Lines {
-		bad := func(format string, args ...any) {
-			k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Text: fmt.Sprintf(format, args...), Line: l.Line})
+		bad := func(block, format string, args ...any) {
+			k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Block: block, Text: fmt.Sprintf(format, args...), Line: l.Line})
 		}
 		if len(l.Ports) == 1 {
-			bad("the line at %s leads nowhere; name the port at its other end", l.Ports[0])
+			bad(l.Ports[0].Block, "the line at %s leads nowhere; name the port at its other end", l.Ports[0])
 		}
 		for _, p := range l.Ports {
 			b := k.c.Block(p.Block)
 			if b == nil {
-				bad("line names %s, but there is no block %s", p, p.Block)
+				bad("", "line names %s, but there is no block %s", p, p.Block)
 				continue
 			}
 			kind := KindNamed(b.Kind)
@@ -163,11 +163,11 @@ func (k *checker) lines() {
 			}
 			port := kind.Port(p.Port)
 			if port == nil {
-				bad("line names %s, but a %s has the ports %s", p, strings.ToLower(kind.Title), join(portNames(kind), "and"))
+				bad(b.ID, "line names %s, but a %s has the ports %s", p, strings.ToLower(kind.Title), join(portNames(kind), "and"))
 				continue
 			}
 			if old, twice := first[p]; twice && b.Kind != kindTank {
-				bad("port %s stands in two lines (the other in line %d); write them as one line, or put a junction between", p, old)
+				bad(b.ID, "port %s stands in two lines (the other in line %d); write them as one line, or put a junction between", p, old)
 			}
 			first[p] = l.Line
 		}

@@ -41,8 +41,12 @@ func ids(bs []*Block) []string {
 // axisOf checks that an axis can be moved as the duty says.
 func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 	given := d.Given(a.Name)
-	bad := func(format string, args ...any) {
-		k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Duty: d.Name, Text: fmt.Sprintf(format, args...), Line: k.c.Line})
+	bad := func(at []*Block, format string, args ...any) {
+		f := Finding{Level: Stops, Circuit: k.c.Name, Duty: d.Name, Text: fmt.Sprintf(format, args...), Line: k.c.Line}
+		if len(at) > 0 {
+			f.Block, f.Line = at[0].ID, at[0].Line
+		}
+		k.found = append(k.found, f)
 	}
 	var movers []*Block
 	for _, b := range sorted(k.c.Blocks) {
@@ -53,9 +57,9 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 	follow, direct := k.followers(a.Name)
 	switch given {
 	case duty.TooFew:
-		bad("duty %q gives only one of motion, load and command for axis %s; give exactly two", d.Name, a.Name)
+		bad(movers, "duty %q gives only one of motion, load and command for axis %s; give exactly two", d.Name, a.Name)
 	case duty.TooMany:
-		bad("duty %q gives motion, load and command for axis %s; give exactly two of them, the third is found", d.Name, a.Name)
+		bad(movers, "duty %q gives motion, load and command for axis %s; give exactly two of them, the third is found", d.Name, a.Name)
 	}
 	k.joined(a, movers, bad)
 	if len(movers) == 0 {
@@ -64,7 +68,7 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 			if len(follow) > 0 {
 				who = ", which " + join(ids(follow), "and") + " follows"
 			}
-			bad("no actuator in circuit %q moves axis %s%s; set axis: %s on a cylinder or motor", k.c.Name, a.Name, who, a.Name)
+			bad(follow, "no actuator in circuit %q moves axis %s%s; set axis: %s on a cylinder or motor", k.c.Name, a.Name, who, a.Name)
 		}
 		return
 	}
@@ -76,10 +80,10 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 		k.say(Stops, follow[1], "follows", "%s all follow axis %s; only one control can answer for its motion", join(ids(follow), "and"), a.Name)
 	}
 	if len(follow) == 0 && given != duty.None && given != duty.LoadCommand {
-		bad("nothing in circuit %q follows axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
+		bad(movers, "nothing in circuit %q follows axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
 	}
 	if len(follow) == 0 && given == duty.LoadCommand && len(direct) == 0 {
-		bad("nothing in circuit %q takes the command of axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
+		bad(movers, "nothing in circuit %q takes the command of axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
 	}
 	if len(follow) == 1 {
 		k.holding(act, follow[0], direct)
@@ -94,14 +98,14 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 
 // joined checks that several actuators of an axis can move as one: cylinders joined
 // rigidly can, machines that turn are joined by their shafts.
-func (k *checker) joined(a duty.Axis, movers []*Block, bad func(format string, args ...any)) {
+func (k *checker) joined(a duty.Axis, movers []*Block, bad func(at []*Block, format string, args ...any)) {
 	if len(movers) < 2 {
 		return
 	}
 	first := KindNamed(movers[0].Kind).WordOf(movers[0], "hold")
 	for _, b := range movers {
 		if !movesAlong(b.Kind) {
-			bad("axis %s is moved by %s; only cylinders can move an axis together. Name the axis at one motor and join the shafts of the others to it by a line", a.Name, join(ids(movers), "and"))
+			bad(movers[1:], "axis %s is moved by %s; only cylinders can move an axis together. Name the axis at one motor and join the shafts of the others to it by a line", a.Name, join(ids(movers), "and"))
 			return
 		}
 		if hold := KindNamed(b.Kind).WordOf(b, "hold"); hold != first {
@@ -140,7 +144,7 @@ func (k *checker) fed(control *Block) {
 			return
 		}
 		for _, p := range n.ports {
-			if kind := k.c.Block(p.Block).Kind; (kind == kindPump || kind == kindSwitched || kind == kindChargePump) && p.Port != "D" {
+			if kind := k.c.Block(p.Block).Kind; (kind == kindPump || kind == kindSwitched || kind == kindChargePump) && p.Port != "D" && n.tank == "" {
 				return
 			}
 		}

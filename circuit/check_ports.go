@@ -56,9 +56,10 @@ func (k *checker) joints() {
 		if len(n.lines) > 0 {
 			line = n.lines[0]
 		}
-		bad := func(text string) {
-			k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Text: text, Line: line})
+		bad := func(block, text string) {
+			k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Block: block, Text: text, Line: line})
 		}
+		at := n.ports[0].Block
 		var kinds []string
 		for t, ports := range types {
 			if t != Pilot || len(types) == 1 {
@@ -68,13 +69,13 @@ func (k *checker) joints() {
 		sort.Strings(kinds)
 		switch {
 		case len(kinds) > 1 || (len(types[Pilot]) > 0 && !oil && len(types) > 1):
-			bad("a line joins different things: " + join(kinds, "and") + "; they cannot be connected")
+			bad(at, "a line joins different things: "+join(kinds, "and")+"; they cannot be connected")
 		case oil && len(sources) > 0:
-			bad("signal outlet " + sources[0] + " stands on an oil line; lead it to pilot ports only")
+			bad(at, "signal outlet "+sources[0]+" stands on an oil line; lead it to pilot ports only")
 		case len(types[Pilot]) > 0 && !oil && len(sources) == 0:
-			bad("nothing gives a pressure to the pilot line at " + n.name() + "; lead it to an oil line, to LS of a valve or to A of a shuttle valve")
+			bad(at, "nothing gives a pressure to the pilot line at "+n.name()+"; lead it to an oil line, to LS of a valve or to A of a shuttle valve")
 		case len(sources) > 1:
-			bad("two signals meet at " + join(sources, "and") + "; put a shuttle valve between them")
+			bad(at, "two signals meet at "+join(sources, "and")+"; put a shuttle valve between them")
 		}
 		k.fixedPressures(n, bad)
 	}
@@ -82,7 +83,7 @@ func (k *checker) joints() {
 }
 
 // fixedPressures refuses two given pressures on one node.
-func (k *checker) fixedPressures(n *net, bad func(string)) {
+func (k *checker) fixedPressures(n *net, bad func(block, text string)) {
 	var fixed []string
 	seen := map[string]bool{}
 	for _, p := range n.ports {
@@ -94,7 +95,7 @@ func (k *checker) fixedPressures(n *net, bad func(string)) {
 		}
 	}
 	if len(fixed) > 1 {
-		bad(join(fixed, "and") + " hold one line at pressures of their own; separate them by a valve or remove one")
+		bad(n.src, join(fixed, "and")+" hold one line at pressures of their own; separate them by a valve or remove one")
 	}
 }
 

@@ -239,6 +239,10 @@ func (t *throat) flow(dp float64) (q, dq float64) {
 	return dp * t.k2 / h, h / s
 }
 
+// first is a flow for a cold start: what passes at some 10 bar, at most a twentieth of
+// the flow scale. A small throat that starts with more has a drop beyond all measure.
+func (t throat) first() float64 { return math.Min(0.05, 0.3*math.Sqrt(t.k2)) }
+
 // chord is the slope that leads from a drop with its flow to the drop that a flow q
 // belongs to, where the two lie far apart: at flows near zero the tangent, which a root
 // makes flat, would lead far past it. Elsewhere it is the tangent.

@@ -49,5 +49,5 @@ func (m *gate) bookGate(k *booking) {
 }
 
 func (m *gate) cold(s *step, level int, x []float64) {
-	x[m.q1], x[m.q2], x[m.s] = 0.05, 0.05, 0.5
+	x[m.q1], x[m.q2], x[m.s] = m.free.first(), m.back.first(), 0.5
 }

@@ -55,8 +55,8 @@ func (j *judge) turbulent(q, dp, qN, dN float64) bool {
 	return law(dp-e) <= q+j.tiny() && q-j.tiny() <= law(dp+e)
 }
 
-// tiny is a flow that is none: a billionth of what the machines of the circuit move.
-func (j *judge) tiny() float64 { return 1e-9 * j.c.flowScale(j.c.defaults) }
+// tiny is a flow that is none: a billionth of the largest of the circuit.
+func (j *judge) tiny() float64 { return 1e-9 * j.flow }
 
 // oneWay: nothing passes backwards, nothing before it opens, then the square-root law.
 func (j *judge) oneWay(b *Block, in, out, opens string) {

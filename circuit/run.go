@@ -162,7 +162,7 @@ func (r *run) all(ctx context.Context, st State, from, end int, to Receiver) (St
 			lost = 0
 			copy(good, x)
 		} else if lost++; lost >= lostSteps {
-			return fmt.Errorf("%w: %d time steps in a row, the last at %g s, worst at %s (%s)", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0].Where, r.cert.Unsolved[0].Residual)
+			return fmt.Errorf("%w: %d time steps in a row, the last at %g s; %s", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0])
 		}
 		r.report(k, !res.Solved())
 		if !res.Solved() {
@@ -345,8 +345,7 @@ func (r *run) certify(k int, res balance.Result) {
 	}
 	c.Unbalanced++
 	if len(c.Unsolved) < 8 {
-		w := res.Worst
-		c.Unsolved = append(c.Unsolved, Unsolved{T: r.step.t, Where: r.rows[w].where, Residual: r.residual(w), Tried: balance.Tried()})
+		c.Unsolved = append(c.Unsolved, r.unsolved(res.Worst))
 	}
 }
 
@@ -356,17 +355,6 @@ func (r *run) forceUnit(row *rowName) float64 {
 		return r.scales.p * r.volumes[row.axis]
 	}
 	return r.scales.p * r.scales.q / 157
-}
-
-// residual writes what is left of a row in words.
-func (r *run) residual(i int) string {
-	left := r.solver.Residual(i)
-	switch r.rows[i].kind {
-	case flowRow, passRow:
-		return units.Format(left*r.scales.q, units.Preferred(units.Flow, units.Metric), 3)
-	default:
-		return units.Format(left*r.scales.p, units.Preferred(units.Pressure, units.Metric), 3)
-	}
 }
 
 // bookAll books the point that was balanced last: signals, powers, slow states.

@@ -1,6 +1,8 @@
 package circuit
 
 import (
+	"fmt"
+
 	"barlitre/machines"
 	"barlitre/machines/units"
 )
@@ -141,8 +143,13 @@ type Certificate struct {
 type Unsolved struct {
 	T        float64
 	Where    string // node or block with the largest residual
-	Residual string // in L/min, bar or kN
+	Residual string // largest of the flows and of the pressures
 	Tried    []string
+	Cause    string // the likely one, and what to look at
+}
+
+func (u Unsolved) String() string {
+	return fmt.Sprintf("not balanced at %s: %s is left with %s; likely cause: %s", clock(u.T), u.Where, u.Residual, u.Cause)
 }
 
 // State is carried from one call of Run to the next: the last solution, where

@@ -32,7 +32,7 @@ func (w *regulated) eval(e *eval) {
 	e.d(w.q, w.z, 1)
 }
 
-func (w *regulated) cold(x []float64) { x[w.q], x[w.z] = 0.05, 0.1 }
+func (w *regulated) cold(x []float64) { x[w.q], x[w.z] = w.t.first(), 0.1 }
 
 // returnParams are the parameters of a check valve built in beside another way.
 func returnParams(reverse ...string) []Param {
@@ -94,7 +94,7 @@ func (w *returnCheck) book(k *booking) float64 {
 
 func (w *returnCheck) cold(x []float64) {
 	if w.q >= 0 {
-		x[w.q] = 0.05
+		x[w.q] = w.t.first()
 	}
 }
 
@@ -137,6 +137,6 @@ func (m *checkedThrottle) book(k *booking) {
 }
 
 func (m *checkedThrottle) cold(s *step, level int, x []float64) {
-	x[m.q] = 0.05
+	x[m.q] = m.t.first()
 	m.back.cold(x)
 }
