@@ -29,7 +29,7 @@ var wrongCircuits = map[string]struct{ block, text string }{
 	"shaft_on_oil":                {"C1", "joins different things: oil (C1.B) and shaft (M1.shaft)"},
 	"signal_on_oil":               {"F1", "signal outlet V1.LS stands on an oil line"},
 	"source_on_tank":              {"S1", "hold one line at pressures of their own; separate them"},
-	"two_actuators":               {"C2", "axis ram has two actuators, C1 and C2"},
+	"pair_held_differently":       {"C2", "it moves axis ram together with C1, which is held by the valve; give both the same hold"},
 	"two_controls":                {"V1", "P1 and V1 all follow axis ram; only one control can answer"},
 	"two_drives":                  {"M2", "M1 and M2 each give the same shaft a speed; keep one"},
 	"two_pressure_pumps":          {"P2", "both hold the pressure of one line"},
