@@ -78,4 +78,6 @@ func (m *unloadingPilotModel) book(k *booking) {
 	k.put(m.sigU, k.val(m.s))
 }
 
-func (m *unloadingPilotModel) cold(s *step, level int, x []float64) { x[m.q], x[m.s] = m.open.first(), 0.5 }
+func (m *unloadingPilotModel) cold(s *step, level int, x []float64) {
+	x[m.q], x[m.s] = m.open.first(), 0.5
+}
