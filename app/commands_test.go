@@ -114,7 +114,7 @@ func TestUnbalancedCode(t *testing.T) {
 		Certificate: circuit.Certificate{Unbalanced: 1, Unsolved: []circuit.Unsolved{{T: 1.5, Where: "V1", Residual: "2 bar"}}}}}}}}
 	s.Circuits[0].Duties[0].Duty = dutyNamed("day")
 	var errs bytes.Buffer
-	if code := exitOf(s, "x.yaml", &errs); code != exitUnbalanced || !strings.Contains(errs.String(), "1.5 s") {
+	if code := exitOf(s, "x.yaml", &errs); code != exitUnbalanced || !strings.Contains(errs.String(), "1.500 s") {
 		t.Errorf("exit %d, says %q", code, errs.String())
 	}
 }

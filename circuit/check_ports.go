@@ -155,6 +155,7 @@ func (k *checker) shafts() {
 func (k *checker) train(n *net) {
 	nets, _, ring := train(k.c, k.of, n)
 	var prime, movers, loads []string
+	var axes []*Block
 	for _, m := range nets {
 		if m.id < n.id {
 			return
@@ -166,6 +167,9 @@ func (k *checker) train(n *net) {
 				k.slows(nets, b)
 			case kindHydraulicMotor:
 				movers = append(movers, b.ID)
+				if b.Word("axis") != "" {
+					axes = append(axes, b)
+				}
 			default:
 				if !slices.Contains(loads, b.ID) {
 					loads = append(loads, b.ID)
@@ -178,6 +182,9 @@ func (k *checker) train(n *net) {
 	}
 	if len(prime) > 1 {
 		k.say(Stops, k.c.Block(prime[1]), "", "%s each give the same shaft a speed; keep one", join(prime, "and"))
+	}
+	if len(prime) > 0 && len(axes) > 0 {
+		k.say(Stops, axes[0], "axis", "it drives axis %s, but %s gives its shaft a speed; take one of them off the shaft", axes[0].Word("axis"), prime[0])
 	}
 	if len(prime)+len(movers) == 0 {
 		k.say(Stops, k.c.Block(loads[0]), "", "nothing drives the shaft of %s; connect an electric motor or an engine to it", join(loads, "and"))

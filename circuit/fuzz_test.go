@@ -2,8 +2,11 @@ package circuit
 
 import (
 	"context"
+	"maps"
 	"math/rand/v2"
+	"slices"
 	"testing"
+	"time"
 
 	"barlitre/circuit/duty"
 )
@@ -33,10 +36,12 @@ func scramble(r *rand.Rand, c *Circuit, d *duty.Duty) {
 			block().Kind = catalog[r.IntN(len(catalog))].Name
 		case 5:
 			b := block()
-			for key, v := range b.Values {
+			keys := slices.Sorted(maps.Keys(b.Values)) // so that a seed says all
+			if len(keys) > 0 {
+				key := keys[r.IntN(len(keys))]
+				v := b.Values[key]
 				v.SI *= []float64{0, -1, 1e-9, 1e-3, 1e3, 1e9}[r.IntN(6)]
 				b.Values[key] = v
-				break
 			}
 		case 6:
 			b := block()
@@ -81,7 +86,9 @@ func FuzzCircuit(f *testing.F) {
 		j := newJudge(k, s, trialOil)
 		j.laws = nil // numbers may be out of all measure
 		steps := 0
-		_, cert, err := Run(context.Background(), k, k.Defaults(), s, trialOil, State{}, receiveAll{j, func(*Sample) { steps++ }})
+		ctx, stop := context.WithTimeout(context.Background(), 3*time.Second)
+		defer stop()
+		_, cert, err := Run(ctx, k, k.Defaults(), s, trialOil, State{}, receiveAll{j, func(*Sample) { steps++ }})
 		if steps == 0 || (err == nil && cert.Steps < steps) || cert.Unbalanced > cert.Steps {
 			t.Fatalf("%d steps handed over, %+v, %v\n%s", steps, cert, err, text)
 		}

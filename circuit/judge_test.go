@@ -105,8 +105,8 @@ func (j *judge) energy(x *Sample) {
 		}
 		if ch.Role == Loss && p < 0 {
 			sup := j.most(x)
-			if i == j.c.void { // what holds shut chambers at rest gives a billionth of the machines' power
-				sup = math.Max(sup, 1e-2*j.c.flowScale(j.c.defaults)*math.Max(j.peak, 100e5))
+			if i == j.c.void { // what holds shut chambers: a billionth of the machines' flow at 100 bar
+				sup += 1e-3 * j.c.flowScale(j.c.defaults) * j.peak * (j.peak + j.asked(x)) / 100e5
 			}
 			if p < -1e-6*sup-j.tiny()*j.peak {
 				j.find(x, fmt.Errorf("%s %s makes %g W of %g W", ch.Block, ch.Kind, -p, sup))
@@ -127,6 +127,15 @@ func (j *judge) most(x *Sample) float64 {
 	return m
 }
 
+// asked is the highest pressure that a load alone asks for.
+func (j *judge) asked(x *Sample) float64 {
+	p := 0.0
+	for i, a := range x.Axes {
+		p = math.Max(p, math.Abs(a.Load)/j.c.movers[i].volume(j.c.defaults))
+	}
+	return p
+}
+
 // verdict says in one error what is wrong with a run, nil if nothing is.
 func (j *judge) verdict() error {
 	switch {
@@ -134,7 +143,7 @@ func (j *judge) verdict() error {
 		return j.wrong
 	case j.left > 1e-6*j.flow*math.Max(1, j.peak/1e9): // what ties a shut chamber to a pressure shows above 10,000 bar
 		return fmt.Errorf("node %s is left with %g of %g L/min", j.where, j.left*60000, j.flow*60000)
-	case j.missing > 1e-6*j.passed+1e-3:
+	case j.missing > 1e-6*j.passed+heldFlow*j.c.flowScale(j.c.defaults)*j.peak+1e-3: // slower than heldFlow is no motion
 		return fmt.Errorf("%g of %g W do not close at %g s", j.missing, j.passed, j.lost)
 	}
 	return nil

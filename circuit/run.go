@@ -171,7 +171,7 @@ func (r *run) all(ctx context.Context, st State, from, end int, to Receiver) (St
 		return to.Sample(&r.sample)
 	}
 	for k := from; k < end; k++ {
-		if k&255 == 0 && ctx.Err() != nil {
+		if (k&255 == 0 || lost > 0) && ctx.Err() != nil { // unsolved steps take long
 			return r.state, r.cert, ctx.Err()
 		}
 		if err := r.through(k, x, good, point); err != nil {
@@ -212,7 +212,15 @@ func (r *run) approach(k int, share float64, x, good []float64) balance.Result {
 	for _, haste := range [...]float64{1000, 300, 100, 30, 10, 3, 1} {
 		r.haste = haste
 		r.begin(k, share)
-		res = r.solver.Solve(r, x, len(coldStarts), r.cold)
+		if res = r.solver.Solve(r, x, 1, r.cold); !res.Solved() {
+			break
+		}
+	}
+	if r.haste > 1 { // none of the easier ones counts
+		r.haste = 1
+		r.begin(k, share)
+		copy(x, good)
+		return r.solver.Solve(r, x, 0, r.cold)
 	}
 	if res.Solved() {
 		res.Rung = balance.Levels

@@ -149,7 +149,11 @@ type Unsolved struct {
 }
 
 func (u Unsolved) String() string {
-	return fmt.Sprintf("not balanced at %s: %s is left with %s; likely cause: %s", clock(u.T), u.Where, u.Residual, u.Cause)
+	text := fmt.Sprintf("not balanced at %s: %s is left with %s", clock(u.T), u.Where, u.Residual)
+	if u.Cause != "" {
+		text += "; likely cause: " + u.Cause
+	}
+	return text
 }
 
 // State is carried from one call of Run to the next: the last solution, where
