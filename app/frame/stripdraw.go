@@ -54,7 +54,7 @@ func (s *strip) drawTracks(p pen.Pen, w, h float64, pal figures.Palette) {
 	}
 	if more := len(plot.Lanes) - fit; more > 0 && fit > 0 {
 		plot.Lanes = plot.Lanes[:fit]
-		p.Text(pen.Pt{X: 6, Y: 13}, plural(more, "track", "tracks")+" more", 10, pal.Secondary, pen.Left, false)
+		p.Text(pen.Pt{X: 6, Y: 13}, "+ "+plural(more, "track", "tracks"), 10, pal.Secondary, pen.Left, false)
 	}
 	p.Push(6, 2, 1)
 	if fit > 0 {
