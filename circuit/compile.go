@@ -30,6 +30,7 @@ type Compiled struct {
 	n, nfix  int
 	rows     []rowName // by unknown
 	models   []model
+	openings []slot // of valves that a pilot pressure opens
 	inertia  bool
 	electric int // number of electric nodes
 	slow     []slowState

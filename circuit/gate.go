@@ -13,8 +13,10 @@ type gate struct {
 }
 
 func newGate(k *compiler, b *Block, V, C string, po, qN, dN, qV, qC, loss int) gate {
-	return gate{V: k.node(b, V), C: k.node(b, C), q1: k.unknown(otherRow, b.ID), q2: k.unknown(otherRow, b.ID), s: k.unknown(otherRow, b.ID+" opening"),
+	g := gate{V: k.node(b, V), C: k.node(b, C), q1: k.unknown(otherRow, b.ID), q2: k.unknown(otherRow, b.ID), s: k.unknown(otherRow, b.ID+" opening"),
 		po: po, qN: qN, dN: dN, qN2: -1, dN2: -1, qV: qV, qC: qC, loss: loss}
+	k.openings = append(k.openings, g.s)
+	return g
 }
 
 func (m *gate) bindGate(b *binding) {

@@ -192,9 +192,45 @@ func (r *run) solve(k int, share float64, x, good []float64, warm bool) balance.
 	r.solved = r.step.t
 	res := r.solver.Solve(r, x, len(coldStarts), r.cold)
 	r.solver.Foretell = false
+	if !res.Solved() && len(r.openings) > 0 {
+		res = r.pilots(x, good)
+	}
 	if !res.Solved() {
 		res = r.approach(k, share, x, good)
 	}
+	return res
+}
+
+// mostPilots bounds how many valves are tried both shut and open.
+const mostPilots = 4
+
+// pilots holds the valves that a pilot pressure opens shut or wide open, in every way,
+// and then lets them go: opening lowers or raises the pressure that opens them, so that
+// answers lie far apart and a way from elsewhere may end between them.
+func (r *run) pilots(x, good []float64) balance.Result {
+	var res balance.Result
+	n := min(len(r.openings), mostPilots)
+	lo, hi := r.solver.Lo, r.solver.Hi
+	for ways := range 1 << n {
+		copy(x, good)
+		for i, s := range r.openings[:n] {
+			v := float64(ways >> i & 1)
+			lo[s], hi[s], x[s] = v, v, v
+		}
+		held := r.solver.Solve(r, x, 1, r.cold)
+		for _, s := range r.openings[:n] {
+			lo[s], hi[s] = 0, 1
+		}
+		if !held.Solved() {
+			continue
+		}
+		if res = r.solver.Solve(r, x, 0, r.cold); res.Solved() {
+			res.Rung = balance.Levels
+			return res
+		}
+	}
+	copy(x, good)
+	res.Rung = balance.Failed
 	return res
 }
 
