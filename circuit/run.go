@@ -248,15 +248,11 @@ func (r *run) approach(k int, share float64, x, good []float64) balance.Result {
 	for _, haste := range [...]float64{1000, 300, 100, 30, 10, 3, 1} {
 		r.haste = haste
 		r.begin(k, share)
-		if res = r.solver.Solve(r, x, 1, r.cold); !res.Solved() {
-			break
+		levels := 1
+		if haste == 1 || haste == 1000 {
+			levels = len(coldStarts)
 		}
-	}
-	if r.haste > 1 { // none of the easier ones counts
-		r.haste = 1
-		r.begin(k, share)
-		copy(x, good)
-		return r.solver.Solve(r, x, 0, r.cold)
+		res = r.solver.Solve(r, x, levels, r.cold)
 	}
 	if res.Solved() {
 		res.Rung = balance.Levels

@@ -22,9 +22,10 @@ type tally struct {
 
 // TestRandomPlants balances random sound circuits of 3 to 40 blocks with parameters over
 // three decades, steps and overrunning loads, and judges every step apart from the
-// solver. None may be refused, none wrong. The aim is that at most 1 in 10,000 steps is
-// left unsolved, and marked; what is reached is 2 to 4, so the test allows 5. Every tenth circuit carries a planted defect and must be
-// refused, naming it. BARLITRE_LONG says how many circuits; some run always.
+// solver. None may be refused, none wrong. At most 1 in 10,000 steps may be left
+// unsolved, and is marked; a short run may leave one. Every tenth circuit carries a
+// planted defect and must be refused, naming it. BARLITRE_LONG says how many circuits;
+// some run always.
 func TestRandomPlants(t *testing.T) {
 	count, first := 400, 0
 	if n, err := strconv.Atoi(os.Getenv("BARLITRE_LONG")); err == nil {
@@ -56,8 +57,8 @@ func TestRandomPlants(t *testing.T) {
 			t.Errorf("no circuit with %s", defects[i].name)
 		}
 	}
-	if all.unsolved*2000 > all.steps {
-		t.Errorf("%d of %d steps unsolved, at most 1 in 2000 may be", all.unsolved, all.steps)
+	if all.unsolved > 1+all.steps/10000 {
+		t.Errorf("%d of %d steps unsolved, at most 1 in 10000 may be", all.unsolved, all.steps)
 	}
 }
 
