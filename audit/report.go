@@ -59,8 +59,9 @@ type CircuitPage struct {
 	Duties           []DutyPage
 	Year             []Figure
 	Heat             []Figure
-	States           Table // time and energy by state of the machine
-	Losses           Table // over the year
+	Machines         []MachinePage // those with most loss first
+	States           Table         // time and energy by state of the machine
+	Losses           Table         // over the year
 	Parameters       []ParameterRow
 	Findings         []circuit.Finding
 }
@@ -136,6 +137,7 @@ func (s *Solution) circuitPage(p printer, c *CircuitRun) CircuitPage {
 		page.Heat = s.heatFigures(p, c)
 		page.States = stateTable(p, c.Year)
 		page.Losses = s.yearLossTable(p, c)
+		page.Machines = s.machinePages(p, c)
 	}
 	return page
 }

@@ -23,16 +23,16 @@ type panel struct {
 	scroll  *container.Scroll
 	live    *live
 	rows    []row
-	all     *link
+	groups  []*group
 	content *fyne.Container
 
-	shows    string            // circuit and block that the rows are of
-	expanded bool              // values left at their defaults are listed as well
-	drafts   map[string]string // refused texts, by target
+	shows    string                   // circuit and block that the rows are of
+	expanded map[circuit.Section]bool // values left at their defaults are listed as well
+	drafts   map[string]string        // refused texts, by target
 }
 
 func newPanel(s *Station) *panel {
-	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}}
+	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}, expanded: map[circuit.Section]bool{}}
 	p.head = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), p.drawHead), "sheet.title")
 	p.live = newLive(p)
 	p.list = container.New(tight{})
@@ -79,10 +79,13 @@ func (p *panel) at() (c *audit.CircuitEntry, b *circuit.Block) {
 // changed brings in what changed.
 func (p *panel) changed(w station.What) {
 	if w.Has(station.Model | station.Selection | station.Settings) {
-		if shows := p.key(); shows != p.shows || w.Has(station.Settings) {
+		switch shows := p.key(); {
+		case shows != p.shows || w.Has(station.Settings):
 			p.shows = shows
 			p.rebuild()
-		} else {
+		case p.hidden():
+			p.rebuildHere()
+		default:
 			p.fill()
 		}
 	}
@@ -110,7 +113,7 @@ func (p *panel) key() string {
 // rebuild makes the rows anew.
 func (p *panel) rebuild() {
 	p.leave()
-	p.rows, p.all = nil, nil
+	p.rows, p.groups = nil, nil
 	c, b := p.at()
 	switch {
 	case c == nil:
@@ -125,11 +128,16 @@ func (p *panel) rebuild() {
 	}
 	for _, r := range p.rows {
 		r.fill()
-		p.list.Add(r.object())
+		if b == nil {
+			p.list.Add(r.object())
+		}
 	}
-	if p.all != nil {
-		p.list.Add(p.all)
+	for _, g := range p.groups {
+		for _, o := range g.objects() {
+			p.list.Add(o)
+		}
 	}
+	p.summarize()
 	if b != nil {
 		p.list.Add(p.live.content)
 	}
@@ -162,6 +170,7 @@ func (p *panel) fill() {
 	for _, r := range p.rows {
 		r.fill()
 	}
+	p.summarize()
 	p.head.Refresh()
 }
 
@@ -214,10 +223,11 @@ func (p *panel) showParameter(key string) {
 		}
 		return nil
 	}
-	if has() == nil && p.all != nil {
-		p.expanded = true
-		p.rebuild()
-		p.relay()
+	if _, b := p.at(); has() == nil && b != nil {
+		if q := circuit.KindNamed(b.Kind).Param(key); q != nil {
+			p.expanded[q.Section] = true
+			p.rebuildHere()
+		}
 	}
 	r := has()
 	if w := p.s.ctx.Window(); r != nil && w != nil && p.s.panelOpen() {
