@@ -91,6 +91,7 @@ func (r *fileRow) ask() {
 	k, room := widgets.Scale(), ctx.Window().Canvas().Size()
 	d.Resize(fyne.NewSize(min(760*k, room.Width-40), min(520*k, room.Height-40)))
 	d.Show()
+	ctx.Keep(d)
 }
 
 // chosen takes a file that lies beside the audit file, or in a folder there.

@@ -6,7 +6,6 @@ import (
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
-	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
@@ -43,16 +42,7 @@ func (p *panel) dress(g *group) {
 	if g.section == "" {
 		return
 	}
-	k := widgets.Scale()
-	title := canvas.NewText(string(g.section), p.s.ctx.Palette().Ink)
-	title.TextSize, title.TextStyle.Bold = 12.5*k, true
-	line := container.New(headLine{}, title, canvas.NewText("", nil))
-	if g.toggle != nil {
-		line.Add(g.toggle)
-	}
-	rule := canvas.NewRectangle(p.s.ctx.Palette().Edge)
-	rule.SetMinSize(fyne.NewSize(1, 1))
-	g.head = container.New(tight{}, gapOf(9), rule, gapOf(3), line)
+	g.head = p.heading(string(g.section), g.toggle)
 	g.about = p.label(widget.LowImportance)
 }
 

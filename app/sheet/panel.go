@@ -22,6 +22,11 @@ type panel struct {
 	list    *fyne.Container
 	scroll  *container.Scroll
 	live    *live
+	asked   *asked
+	year    *year
+	gallery *gallery
+	parts   []*part
+	links   *fyne.Container // to the parts
 	rows    []row
 	groups  []*group
 	content *fyne.Container
@@ -35,9 +40,11 @@ func newPanel(s *Station) *panel {
 	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}, expanded: map[circuit.Section]bool{}}
 	p.head = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), p.drawHead), "sheet.title")
 	p.live = newLive(p)
+	p.newParts()
 	p.list = container.New(tight{})
 	p.scroll = container.NewVScroll(container.New(edges{}, p.list))
-	inner := container.NewBorder(p.head, nil, nil, nil, p.scroll)
+	top := container.New(tight{}, p.head, p.links)
+	inner := container.NewBorder(top, nil, nil, nil, p.scroll)
 	p.content = container.NewStack(p.paper, container.New(inset{4}, inner))
 	return p
 }
@@ -92,6 +99,7 @@ func (p *panel) changed(w station.What) {
 	if w.Has(station.Model | station.Solution | station.Selection | station.Settings) {
 		p.warn()
 		p.live.replot()
+		p.bringParts()
 	}
 	p.live.moved()
 	p.relay()
@@ -139,7 +147,7 @@ func (p *panel) rebuild() {
 	}
 	p.summarize()
 	if b != nil {
-		p.list.Add(p.live.content)
+		p.listParts()
 	}
 	for _, r := range p.rows {
 		if f, ok := r.(interface{ restore() }); ok {
