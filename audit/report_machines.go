@@ -78,7 +78,7 @@ func (c *CircuitRun) machinePage(p printer, b *circuit.Block) MachinePage {
 		{"runs " + span, sum.Running, p.hours(sum.Running), Calculation{"time with power or a loss", p.hours(sum.Running), fromBalance}},
 		{"takes in " + span, sum.In, energy(sum.In), Calculation{"what enters it on either side", energy(sum.In), fromBalance}},
 		share("mean efficiency, by energy", over(sum.Out, sum.In), "Σ out / Σ in", energy(sum.Out)+" / "+energy(sum.In), fromBalance+"; in four quadrants, a start left out"),
-		share("time at part load, below "+p.share(PartLoad), over(sum.Part, sum.Running), "t(P < 0.3·P_N) / t(running)", p.hours(sum.Part)+" / "+p.hours(sum.Running), basis),
+		share("time at part load, below "+units.Format(PartLoad, units.Percent, 2), over(sum.Part, sum.Running), "t(P < 0.3·P_N) / t(running)", p.hours(sum.Part)+" / "+p.hours(sum.Running), basis),
 		{"loses " + span, page.Loss, energy(page.Loss), Calculation{yearFormula, energy(page.Loss), "losses of the block, starts with them"}},
 	}
 	if b.Fit != nil {

@@ -11,7 +11,7 @@ import (
 
 	"fyne.io/fyne/v2"
 
-	"barlitre/app/station"
+	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
 	"barlitre/circuit"
 	"barlitre/machines"
@@ -121,9 +121,12 @@ func (b *bench) drawn() {
 // tall shows the whole panel of a block, to be looked at.
 func (b *bench) tall(circuit int, block, name string) {
 	b.Select(circuit, block)
+	if !stationtest.Looking() {
+		return
+	}
 	for range 3 {
-		b.win.Resize(fyne.NewSize(1201, b.s.panel.list.MinSize().Height/panelShare+300))
-		b.win.Resize(fyne.NewSize(1200, b.s.panel.list.MinSize().Height/panelShare+300))
+		b.win.Resize(fyne.NewSize(1201*widgets.Scale(), b.s.panel.list.MinSize().Height/panelShare+400*widgets.Scale()))
+		b.win.Resize(fyne.NewSize(1200*widgets.Scale(), b.s.panel.list.MinSize().Height/panelShare+400*widgets.Scale()))
 	}
 	b.drawn()
 	b.picture(name)
@@ -144,16 +147,12 @@ func TestMachinePanels(t *testing.T) {
 	}{{0, "P1"}, {0, "M1"}, {0, "E1"}, {0, "P2"}, {0, "H1"}, {1, "FC1"}, {1, "M1"}, {1, "P1"}} {
 		b.tall(x.at, x.block, fmt.Sprintf("panel-%d-%s", x.at, x.block))
 	}
-	for s := range b.s.panel.expanded {
-		t.Logf("open: %q", s)
-	}
 	for _, s := range circuit.Sections {
 		b.s.panel.expanded[s] = true
 	}
 	b.theme(true, 1.5)
 	b.tall(0, "P1", "panel-all-dark-150")
 	b.tall(0, "M1", "panel-all-M1-dark-150")
-	b.s.Changed(station.Settings)
+	b.s.panel.gallery.choose(b.s.panel.gallery.choice.Options[0])
+	b.tall(0, "P2", "panel-all-P2-dark-150")
 }
-
-var _ = widgets.Named

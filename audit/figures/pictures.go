@@ -54,7 +54,7 @@ func machinePictures(s *audit.Solution, c *audit.CircuitRun, block string, sys u
 		out = append(out, setting)
 	}
 	if b.Fit != nil {
-		out = append(out, Picture{fitLeaves, EfficiencyMap{}.Height, func(p pen.Pen, w, h float64, pal Palette) {
+		out = append(out, Picture{fitLeaves, mapHeight, func(p pen.Pen, w, h float64, pal Palette) {
 			if m := of(); m != nil {
 				FitResiduals(m, sys).Draw(p, w, h, pal)
 			}
@@ -63,8 +63,19 @@ func machinePictures(s *audit.Solution, c *audit.CircuitRun, block string, sys u
 	return out
 }
 
+// mapHeight is that of a map, with room for a legend in more lines where it is narrow.
+func mapHeight(w float64) float64 {
+	h := EfficiencyMap{}.Height(w)
+	if w < narrowMap {
+		h += 2 * legendStep
+	}
+	return h
+}
+
+const narrowMap = 450.0
+
 func mapPicture(name string, of func() *audit.MachineMap, lay func(*audit.MachineMap) EfficiencyMap) Picture {
-	return Picture{name, EfficiencyMap{}.Height, func(p pen.Pen, w, h float64, pal Palette) {
+	return Picture{name, mapHeight, func(p pen.Pen, w, h float64, pal Palette) {
 		if m := of(); m != nil {
 			lay(m).Draw(p, w, h, pal)
 		}
