@@ -106,7 +106,7 @@ func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 	v, _, ok := circuit.KindNamed(b.Kind).Value(b, r.param.Key)
 	r.fillOrigin(v, false)
 	if !ok {
-		return "", "not given" + join("; follows from ", r.param.Derived) + "; " + r.rangeText(u), "", u.Label()
+		return "", "not given; " + r.param.Text + join("; follows from ", r.param.Derived) + "; " + r.rangeText(u), "", u.Label()
 	}
 	return "", "default" + reason(v) + "; " + r.rangeText(u), r.number(v.SI, u), u.Label()
 }

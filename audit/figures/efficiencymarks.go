@@ -126,8 +126,10 @@ func wrapped(text string, size, w float64) []string {
 // title writes the title of a map, a little smaller where it would not fit.
 func title(p pen.Pen, text string, w float64, c color.NRGBA) {
 	size := headSize
-	if pen.TextWidth(text, size, true) > w {
-		size = textSize
+	for _, smaller := range []float64{textSize, smallSize} {
+		if pen.TextWidth(text, size, true) > w {
+			size = smaller
+		}
 	}
 	p.Text(pen.Pt{Y: headSize}, pen.Shorten(text, size, true, w), size, c, pen.Left, true)
 }

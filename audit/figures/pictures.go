@@ -75,9 +75,34 @@ func mapHeight(w float64) float64 {
 const narrowMap = 450.0
 
 func mapPicture(name string, of func() *audit.MachineMap, lay func(*audit.MachineMap) EfficiencyMap) Picture {
-	return Picture{name, mapHeight, func(p pen.Pen, w, h float64, pal Palette) {
-		if m := of(); m != nil {
-			lay(m).Draw(p, w, h, pal)
+	laid := sync.OnceValue(func() EfficiencyMap {
+		m := of()
+		if m == nil {
+			return EfficiencyMap{}
 		}
-	}}
+		f := lay(m)
+		f.At = remembered(f.At)
+		if f.Inside != nil {
+			f.Inside = remembered(f.Inside)
+		}
+		return f
+	})
+	return Picture{name, mapHeight, func(p pen.Pen, w, h float64, pal Palette) { laid().Draw(p, w, h, pal) }}
+}
+
+// remembered keeps what a function of two numbers returns: a map is drawn on one grid, whatever its size.
+func remembered[T any](f func(x, y float64) T) func(x, y float64) T {
+	var mu sync.Mutex
+	known := map[[2]float64]T{}
+	return func(x, y float64) T {
+		mu.Lock()
+		defer mu.Unlock()
+		at := [2]float64{x, y}
+		v, ok := known[at]
+		if !ok {
+			v = f(x, y)
+			known[at] = v
+		}
+		return v
+	}
 }
