@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"fmt"
+	"image"
 	"math"
 	"os"
 	"path/filepath"
@@ -10,9 +11,11 @@ import (
 	"time"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
+	"barlitre/audit"
 	"barlitre/circuit"
 	"barlitre/machines"
 	"barlitre/machines/units"
@@ -155,4 +158,182 @@ func TestMachinePanels(t *testing.T) {
 	b.tall(0, "M1", "panel-all-M1-dark-150")
 	b.s.panel.gallery.choose(b.s.panel.gallery.choice.Options[0])
 	b.tall(0, "P2", "panel-all-P2-dark-150")
+}
+
+// row finds a row of the panel by the key of its parameter.
+func (b *bench) row(key string) row {
+	b.t.Helper()
+	for _, r := range b.s.panel.rows {
+		if k, ok := r.(interface{ key() string }); ok && k.key() == key {
+			return r
+		}
+	}
+	b.t.Fatalf("the panel shows no row %s", key)
+	return nil
+}
+
+// Defaults that follow from a family follow it when it is changed, and go back when it is taken out.
+func TestFamilyMovesTheDefaults(t *testing.T) {
+	b, _ := openDrives(t, window)
+	b.Select(1, "P1")
+	b.s.panel.showParameter("slip")
+	seen := map[string]string{}
+	for _, family := range []string{"external_gear", "vane", none} {
+		b.row("family").(*choiceRow).sel.SetSelected(family)
+		b.pump()
+		block := b.doc.File().Circuits[1].Block("P1")
+		if got := block.Word("family"); got != strings.Trim(family, none) {
+			t.Fatalf("chosen %q, the file has %q", family, got)
+		}
+		v, _, _ := circuit.KindNamed("pump").Value(block, "slip")
+		r := b.field("slip")
+		if want := r.number(v.SI, r.unitNow()); r.field.PlaceHolder != want || r.field.Text != "" || seen[want] != "" {
+			t.Errorf("%s: the slip stands as %q, the catalog has %q", family, r.field.PlaceHolder, want)
+		}
+		if family != none && !strings.Contains(r.note.Text, "best point") || r.origin.Selected != string(v.Origin) {
+			t.Errorf("%s: the slip is said to be %q, origin %q", family, r.note.Text, r.origin.Selected)
+		}
+		seen[r.field.PlaceHolder] = family
+	}
+	if b.row("family").(*choiceRow).sel.Selected != none {
+		t.Error("a family that was taken out still stands there")
+	}
+}
+
+// Measured points are typed, chosen beside the audit file, and dropped; a file elsewhere is refused with what to do.
+func TestMeasuredPointsInThePanel(t *testing.T) {
+	b, dir := openDrives(t, window)
+	b.Select(0, "P1")
+	r := b.row("points").(*fileRow)
+	if r.field.Text != "pump.csv" || !r.drop.Visible() {
+		t.Fatalf("the points stand as %q", r.field.Text)
+	}
+	elsewhere := filepath.Join(t.TempDir(), "pump.csv")
+	for path, want := range map[string]string{elsewhere: "copy it to " + dir, filepath.Join(dir, "none.csv"): "none.csv"} {
+		r.handed(r.chosen(path))
+		if !strings.Contains(r.note.Text, want) || b.doc.File().Circuits[0].Block("P1").Word("points") != "pump.csv" {
+			t.Errorf("%s: said %q", path, r.note.Text)
+		}
+	}
+	b.s.panel.expanded[circuit.Coefficients] = true
+	b.s.panel.rebuildHere()
+	if r := b.field("slip"); r.origin.Selected != string(circuit.Measured) || !strings.Contains(r.note.Text, "20 points of pump.csv") {
+		t.Errorf("the slip of measured points: %q, %q", r.origin.Selected, r.note.Text)
+	}
+	b.s.panel.showParameter("points_viscosity")
+	b.field("points_viscosity").takeOut()
+	b.pump()
+	r = b.row("points").(*fileRow)
+	r.drop.do()
+	b.pump()
+	if got := b.doc.File().Circuits[0].Block("P1"); got.Word("points") != "" || r.field.Text != "" || r.drop.Visible() {
+		t.Errorf("after drop: %q, the field %q: %s", got.Word("points"), r.field.Text, r.note.Text)
+	}
+	r.handed(r.chosen(filepath.Join(dir, "pump.csv")))
+	b.pump()
+	if b.doc.File().Circuits[0].Block("P1").Fit == nil || r.field.Text != "pump.csv" {
+		t.Errorf("chosen again: %q, %s", r.field.Text, r.note.Text)
+	}
+}
+
+// An audit without a file has no place for measured points.
+func TestPointsNeedASavedAudit(t *testing.T) {
+	b := newBench(t, press, window)
+	b.Select(0, "P1")
+	b.s.panel.showParameter("points")
+	r := b.row("points").(*fileRow)
+	r.field.SetText("pump.csv")
+	r.field.OnSubmitted("pump.csv")
+	if !r.field.Bad() || !strings.Contains(r.note.Text, "save the audit first") {
+		t.Errorf("said %q", r.note.Text)
+	}
+}
+
+// Limits, year and picture of a machine show what report and gates have, both circuits side by side, and open.
+func TestWhatIsAskedOfAMachine(t *testing.T) {
+	b, _ := openDrives(t, window)
+	b.comma = true
+	b.Select(1, "M1")
+	var shown strings.Builder
+	for _, o := range b.s.panel.asked.content.Objects {
+		if l, ok := o.(*widget.Label); ok {
+			shown.WriteString(l.Text + "\n")
+		}
+	}
+	n := 0
+	for _, g := range b.Solution().Circuits[1].Duties[0].Gates {
+		if g.Block != "M1" {
+			continue
+		}
+		n++
+		value, limit, passed := audit.GateText(g)
+		for _, want := range []string{upper(g.Name), value, limit, passed, g.Reason} {
+			if !strings.Contains(shown.String(), b.Local(want)) {
+				t.Errorf("%q is not shown in\n%s", want, shown.String())
+			}
+		}
+	}
+	if n < 2 {
+		t.Errorf("%d gates", n)
+	}
+	y, r := b.s.panel.year, b.Report()
+	if len(y.heads) != 2 {
+		t.Fatalf("set side by side: %v", y.heads)
+	}
+	for i, l := range y.lines {
+		for k := range y.heads {
+			if want := r.Circuits[k].Machine("M1").Figures[i]; l.figures[k] != want {
+				t.Errorf("%s: %v, the report has %v", l.name, l.figures[k], want)
+			}
+		}
+	}
+	y.figure.Tapped(widgets.Part{Name: y.lines[2].name + "/" + y.heads[1]}, 0, 0)
+	if len(b.explained) != 1 || b.explained[0] != y.lines[2].figures[1] {
+		t.Errorf("a click opens %v", b.explained)
+	}
+	b.Select(0, "V1")
+	if b.s.panel.year.figure.Visible() || b.s.panel.gallery.content.Visible() || b.s.panel.links.Visible() {
+		t.Error("a valve is shown as a machine")
+	}
+}
+
+// The picture of a machine is drawn apart from the window's goroutine, changes with the choice, and opens large.
+func TestPictureOfAMachine(t *testing.T) {
+	b, _ := openDrives(t, fyne.NewSize(1200, 2400))
+	b.Select(0, "P1")
+	g := b.s.panel.gallery
+	if got := g.choice.Options; len(got) != 2 {
+		t.Fatalf("pictures of a fixed pump with points: %v", got)
+	}
+	if g.picture.Ready() {
+		t.Error("drawn before it was shown")
+	}
+	b.win.Resize(fyne.NewSize(1201, 2401))
+	b.drawn()
+	first := b.win.Canvas().Capture()
+	g.choose(g.choice.Options[1])
+	b.drawn()
+	if second := b.win.Canvas().Capture(); sameImage(first, second) {
+		t.Error("another picture looks the same")
+	}
+	g.open()
+	if len(b.kept) != 1 {
+		t.Fatal("no dialog opened")
+	}
+	b.kept[0].Hide()
+	b.Select(0, "P2")
+	if got := g.choice.Options; len(got) != 2 || got[0] != "Efficiency over setting" {
+		t.Errorf("pictures of a pump that strokes back: %v", got)
+	}
+}
+
+func sameImage(a, b image.Image) bool {
+	for y := a.Bounds().Min.Y; y < a.Bounds().Max.Y; y++ {
+		for x := a.Bounds().Min.X; x < a.Bounds().Max.X; x++ {
+			if a.At(x, y) != b.At(x, y) {
+				return false
+			}
+		}
+	}
+	return true
 }
