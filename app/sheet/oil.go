@@ -21,12 +21,20 @@ func (p *panel) oilRows() []row {
 		return p.s.ctx.Doc().File().Oil.Grade, "all circuits have the same oil; such as ISO VG 46, or ISO VG 46 HV", "given by its viscosity", ""
 	}
 	grade.stack(grade.field)
-	out := []row{grade}
+	out := []row{&headRow{p.heading("Oil, of all circuits", nil)}, grade}
 	for _, v := range p.s.ctx.Doc().File().OilValues() {
 		out = append(out, newOilRow(p, v))
 	}
 	return append(out, newSuitsRow(p))
 }
+
+// headRow is a heading among the rows.
+type headRow struct{ head fyne.CanvasObject }
+
+func (r *headRow) object() fyne.CanvasObject { return r.head }
+func (r *headRow) fill()                     {}
+func (r *headRow) keep()                     {}
+func (r *headRow) focus() fyne.Focusable     { return nil }
 
 // oilRow is the row of a number of the oil: its value, and where it comes from.
 type oilRow struct {

@@ -60,7 +60,7 @@ func TestOilInThePanel(t *testing.T) {
 	if r := put("temperature", ""); !r.field.Bad() || !b.doc.File().Oil.HasTemperature {
 		t.Error("the oil has lost its temperature")
 	}
-	b.picture("oil-light")
+	b.tall(0, "", "oil-light")
 	b.theme(true, 1.5)
-	b.picture("oil-dark-150")
+	b.tall(0, "", "oil-dark-150")
 }
