@@ -42,6 +42,8 @@ type CircuitRun struct {
 	Heat     *Heat
 	Money    YearCost
 	Services []*Service // of cylinder-switched machines
+	// Extrapolated is the share of the energy of a machine at states outside its measured points, by block.
+	Extrapolated map[string]float64
 }
 
 // DutyRun is one circuit over one duty.
@@ -58,6 +60,7 @@ type DutyRun struct {
 	Operating   map[string][]Operating // states of the displacement machines, by block
 	Exchanges   []Exchange             // between machines on one shaft
 	Services    []ServiceRun
+	Throughput  map[string]Throughput // of machines and drives, by block, over all its cycles
 }
 
 // Solve runs every circuit of the file over every duty and draws up the balances.
@@ -206,8 +209,8 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	ledger := NewLedger(c.Channels(), ShaftSignals(j.run.Circuit, c.Signals()), steps)
 	watch, plot := c.NewWatch(params, series), newRecorder(c.Signals(), c.Channels(), steps)
 	counter := &stepCounter{progress: j.progress, of: steps, open: c.HasSlowStates() && r.Duty.Repeats}
-	operation := newOperation(j.run.Circuit, c.Signals())
-	receivers := circuit.Receivers{ledger, watch, plot, counter, operation}
+	operation, passage := newOperation(j.run.Circuit, c.Signals()), newPassage(j.run.Circuit, c.Signals(), c.Channels())
+	receivers := circuit.Receivers{ledger, watch, plot, counter, operation, passage}
 	if c.HasSlowStates() { // a period may be several cycles: the plot keeps the first of them
 		receivers[2] = &until{plot, series.T[steps-1]}
 	}
@@ -255,7 +258,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	r.Certificate, r.Plot = cert, plot.done()
 	r.Cycles = cycles
 	r.Peak, r.Shortfalls, r.Gates = watch.PeakPressure(), watch.Shortfalls(cycles), watch.Gates()
-	r.Operating = operation.all()
+	r.Operating, r.Throughput = operation.all(), passage.all()
 	r.Measured, r.Plot.Measured = compared.results(), measuredTracks(r.Duty, compared)
 	r.Exchanges, r.Services = passed.list(cycles), used.list(watch.SwitchedUses(cycles), cycles)
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)

@@ -2,6 +2,7 @@ package audit
 
 import (
 	"math"
+	"sync"
 
 	"barlitre/circuit"
 	"barlitre/machines"
@@ -20,14 +21,13 @@ type MachineMap struct {
 	// Limits of the machine, rad/s and Pa; NaN when not given.
 	MinSpeed, MaxSpeed, Rating float64
 
+	look   sync.Once
 	around *machines.Hull
 }
 
-// hull is that of the measured points, found when it is first asked for.
+// hull is that of the measured points, found when it is first asked for, by any goroutine.
 func (m *MachineMap) hull() *machines.Hull {
-	if m.around == nil {
-		m.around = machines.NewHull(m.Fit.Points)
-	}
+	m.look.Do(func() { m.around = machines.NewHull(m.Fit.Points) })
 	return m.around
 }
 
@@ -46,19 +46,34 @@ func (s *Solution) MachineMap(c *CircuitRun, block string) *MachineMap {
 		m.Chart = machines.NewMap(b.Fit)
 	}
 	drives := 0.0
-	for _, d := range c.Duties {
-		times := 1.0
-		if d.Duty.Hours > 0 && d.Balance != nil && d.Balance.Cycle > 0 {
-			times = d.Duty.Hours / d.Balance.Cycle / float64(max(1, d.Cycles))
-		}
-		for _, x := range d.Operating[block] {
-			x.Energy, x.Seconds = times*x.Energy, times*x.Seconds
-			m.States = append(m.States, x)
-			drives += x.Energy * sign(x.E*x.W*x.DP)
-		}
+	m.States = c.states(block)
+	for _, x := range m.States {
+		drives += x.Energy * sign(x.E*x.W*x.DP)
 	}
 	m.Motor = drives < 0
 	return m
+}
+
+// states returns those of a machine in all duties, by their hours a year.
+func (c *CircuitRun) states(block string) []Operating {
+	var out []Operating
+	for _, d := range c.Duties {
+		times := d.times()
+		for _, x := range d.Operating[block] {
+			x.Energy, x.Seconds = times*x.Energy, times*x.Seconds
+			out = append(out, x)
+		}
+	}
+	return out
+}
+
+// times is how often a year what was run comes round; for a duty without hours, one cycle of it.
+func (d *DutyRun) times() float64 {
+	n := float64(max(1, d.Cycles))
+	if d.Duty.Hours > 0 && d.Balance != nil && d.Balance.Cycle > 0 {
+		return d.Duty.Hours / d.Balance.Cycle / n
+	}
+	return 1 / n
 }
 
 // FitMap returns the map of a fit; its states are the points measured, all of one weight.

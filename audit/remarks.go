@@ -85,6 +85,10 @@ func (s *Solution) extrapolations(c *CircuitRun) []circuit.Finding {
 			continue
 		}
 		share := s.MachineMap(c, b.ID).Extrapolated()
+		if c.Extrapolated == nil {
+			c.Extrapolated = map[string]float64{}
+		}
+		c.Extrapolated[b.ID] = share
 		if share < notedOutside {
 			continue
 		}

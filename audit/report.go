@@ -59,9 +59,10 @@ type CircuitPage struct {
 	Duties           []DutyPage
 	Year             []Figure
 	Heat             []Figure
-	States           Table // time and energy by state of the machine
-	Losses           Table // over the year
-	Services         Table // of a cylinder-switched machine; empty without one
+	Machines         []MachinePage // those with most loss first
+	States           Table         // time and energy by state of the machine
+	Losses           Table         // over the year
+	Services         Table         // of a cylinder-switched machine; empty without one
 	Parameters       []ParameterRow
 	Findings         []circuit.Finding
 }
@@ -138,6 +139,7 @@ func (s *Solution) circuitPage(p printer, c *CircuitRun) CircuitPage {
 		page.States = stateTable(p, c.Year)
 		page.Losses = s.yearLossTable(p, c)
 		page.Services = serviceTable(p, c)
+		page.Machines = s.machinePages(p, c)
 	}
 	return page
 }

@@ -224,12 +224,18 @@ func lost(s circuit.Shortfall) string { return units.Number(s.LostStroke, 3) }
 func gateTable(gates []circuit.Gate) Table {
 	t := Table{Title: "What the cycle asks and what there is", Head: []string{"", "asked", "limit", "", "why"}}
 	for _, g := range gates {
-		limit, passed := "not given", ""
-		if known(g.Limit) {
-			limit = units.Format(g.Limit, g.Unit, 3)
-			passed = map[bool]string{true: "passed", false: "not passed"}[g.Passed]
-		}
-		t.add(false, g.Block+": "+g.Name, units.Format(g.Value, g.Unit, 3), limit, passed, g.Reason)
+		asked, limit, passed := GateText(g)
+		t.add(false, g.Block+": "+g.Name, asked, limit, passed, g.Reason)
 	}
 	return t
+}
+
+// GateText writes what is asked, its limit, and whether it is passed, "" where no limit is given.
+func GateText(g circuit.Gate) (asked, limit, passed string) {
+	asked, limit = units.Format(g.Value, g.Unit, 3), "not given"
+	if known(g.Limit) {
+		limit = units.Format(g.Limit, g.Unit, 3)
+		passed = map[bool]string{true: "passed", false: "not passed"}[g.Passed]
+	}
+	return asked, limit, passed
 }

@@ -19,7 +19,7 @@ var converterKind = &Kind{
 	Ports: []Port{
 		{Name: "M", Type: Electric, Text: "to the motors; its other side is the mains"},
 	},
-	Params: []Param{
+	Params: sectioned([]Param{
 		{Key: "rated_power", Title: "Rated power", Symbol: "PN", Dim: units.Power, Need: true, Above: true, Max: 5e6, Text: "rated output"},
 		{Key: "no_load", Title: "No-load loss", Symbol: "k0", Dim: units.Ratio, Derived: converterFrom, Max: 0.2, Text: "share of the rated power"},
 		{Key: "linear", Title: "Linear loss", Symbol: "k1", Dim: units.Ratio, Derived: converterFrom, Max: 0.5, Text: "share of the output"},
@@ -28,7 +28,11 @@ var converterKind = &Kind{
 		{Key: "resistor_power", Title: "Brake resistor", Symbol: "PR", Dim: units.Power, Above: true, Max: 5e6, Text: "mean power it stands; the report then says whether it does"},
 		{Key: "voltage", Title: "Voltage", Symbol: "U", Dim: units.Voltage, Default: "400 V", Origin: Assumed, Source: "low-voltage mains in Europe", Above: true, Max: 15e3, Text: "of the mains between phases; for the current"},
 		{Key: "power_factor", Title: "Power factor", Symbol: "λ", Dim: units.Ratio, Default: "0.93", Origin: Assumed, Source: "six-pulse rectifier with a choke, harmonics included, common practice, no source; an active front end near 1", Above: true, Max: 1, Text: "on the side of the mains; the motors' own is not seen there"},
-	},
+	}, map[Section][]string{
+		Governing:    {"returned"},
+		Coefficients: {"no_load", "linear", "square"},
+		Limits:       {"resistor_power"},
+	}),
 	Losses: []LossKind{
 		{"converter", ToAir, "P = PN·(k0 + k1·x + k2·x²), x = Σ|P|/PN over its motors"},
 		{"brake resistor", ToResistor, "what the motors send back, less the converter loss"},

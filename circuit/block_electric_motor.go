@@ -11,7 +11,7 @@ var electricMotorKind = &Kind{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},
 		{Name: "E", Type: Electric, Optional: true, Text: "terminals; unconnected it hangs on the mains"},
 	},
-	Params: []Param{
+	Params: sectioned([]Param{
 		{Key: "rated_power", Title: "Rated power", Symbol: "PN", Dim: units.Power, Need: true, Above: true, Max: 5e6, Text: "shaft power on the name plate"},
 		{Key: "type", Title: "Type", Type: Choice, Default: "induction", Choices: []string{"induction", "permanent_magnet"}, Text: "permanent_magnet: servo motor without slip, behind a converter"},
 		{Key: "efficiency_class", Title: "Efficiency class", Type: Choice, Choices: []string{"IE1", "IE2", "IE3", "IE4"}, Text: "by IEC 60034-30-1, 0.75 to 200 kW, 2, 4 or 6 poles, 50 Hz; gives the efficiency where none is typed"},
@@ -39,7 +39,11 @@ var electricMotorKind = &Kind{
 		{Key: "starts_per_hour", Title: "Starts an hour", Symbol: "z", Dim: units.Count, Above: true, Max: 1e4, Derived: "30·(PN/hp)^−0.38 with 4 poles, half with 2, a seventh more with 6: NEMA MG 10, from memory", Text: "permitted straight on the mains"},
 		{Key: "inertia", Title: "Moment of inertia", Symbol: "J", Dim: units.Inertia, Max: 1e4, Derived: "0.002 kg m2·(PN/kW)^1.5·(p/4)², from memory of motors of 4 to 110 kW", Text: "of the motor and what turns with it, for the energy of a start"},
 		{Key: "start_loss", Title: "Loss of a start", Symbol: "ks", Dim: units.Ratio, Default: "2", Origin: Assumed, Source: "the rotor heats by the energy of motion (textbook, from memory), the stator by about as much; behind a converter a tenth of it, no source", Max: 10, Text: "heat of a start on the mains over the energy of motion"},
-	},
+	}, map[Section][]string{
+		Governing: {"slip", "control", "follows", "commands", "max_speed", "both_directions", "torque_limit", "idle_speed"},
+		LossBasis: {"loss", "fixed_share", "torque_constant", "resistance", "speed_loss", "inertia", "start_loss"},
+		Limits:    {"breakdown", "cooling", "starts_per_hour"},
+	}),
 	Losses: []LossKind{
 		{"electric motor", ToAir, "P = PV·(kf·|ω|/ωN + (1 − kf)·(T/TN)²), PV = PN·(1/ηN − 1)"},
 		{"starting", ToAir, "E = (1 + ks)·J·(ω² − ω0²)/2 a start; behind a converter ks/10"},

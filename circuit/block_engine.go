@@ -15,7 +15,7 @@ var engineKind = &Kind{
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},
 	},
-	Params: []Param{
+	Params: sectioned([]Param{
 		{Key: "rated_power", Title: "Rated power", Symbol: "PN", Dim: units.Power, Need: true, Above: true, Max: 5e6, Text: "shaft power at the set speed"},
 		{Key: "speed", Title: "Set speed", Symbol: "n", Dim: units.AngularSpeed, Need: true, Above: true, Max: 1000, Text: "speed at full load"},
 		{Key: "droop", Title: "Droop", Symbol: "δ", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "electronic governor that holds its speed; mechanical ones 3 to 8 %, common practice", Max: 0.5, Text: "rise of the speed from full load to full drag, as share of the set speed"},
@@ -26,7 +26,11 @@ var engineKind = &Kind{
 		{Key: "slope", Title: "Slope of the Willans line", Symbol: "s", Dim: units.Ratio, Default: "2.2", Origin: Assumed, Source: "38 % efficiency at full load, common practice, no source", Min: 1, Max: 10, Text: "fuel power for each further watt at the shaft"},
 		{Key: "idle_speed", Title: "Soft idle speed", Symbol: "n0", Dim: units.AngularSpeed, Above: true, Max: 1000, Text: "its governor holds this speed while every axis stands, unless pump_at_rest stops it"},
 		{Key: "start_idling", Title: "Fuel of a start", Symbol: "t0", Dim: units.Time, Default: "10 s", Origin: Assumed, Source: "a start takes as much fuel as so long idling, from memory of idling studies", Max: 600, Text: "of an engine that pump_at_rest stops: as idling without load at its lowest speed for this time"},
-	},
+	}, map[Section][]string{
+		Governing: {"droop", "idle_speed"},
+		LossBasis: {"idle_share", "slope", "start_idling"},
+		Limits:    {"torque_limit", "torque_rise", "min_speed"},
+	}),
 	Losses: []LossKind{
 		{"engine", ToAir, "P = max(0, s·T·ω + k·PN·ω/n) − T·ω; with exhaust and its own cooler; driven by a load, what it brakes"},
 		{"starting", ToAir, "E = k·PN·n1/n·t0 a start"},

@@ -59,8 +59,45 @@ type Param struct {
 	Choices []string
 	Text    string
 	Derived string // what its default follows from in each block, "" where it is the same for all
+	Section Section
 
 	defaultValue Value
+}
+
+// Section is a group of the parameters of a kind that has many; "" where it has few.
+type Section string
+
+// The sections, in the order of a screen.
+const (
+	Plate        Section = "Name plate"
+	Governing    Section = "What it follows"
+	LossBasis    Section = "What its losses follow from"
+	Coefficients Section = "Loss coefficients"
+	Limits       Section = "Limits"
+)
+
+// Sections lists them in order.
+var Sections = []Section{Plate, Governing, LossBasis, Coefficients, Limits}
+
+// of puts parameters into a section.
+func (s Section) of(params ...Param) []Param {
+	for i := range params {
+		params[i].Section = s
+	}
+	return params
+}
+
+// sectioned puts parameters into sections by key; those that none names are on the name plate.
+func sectioned(params []Param, keys map[Section][]string) []Param {
+	for i := range params {
+		params[i].Section = Plate
+		for s, list := range keys {
+			if slices.Contains(list, params[i].Key) {
+				params[i].Section = s
+			}
+		}
+	}
+	return params
 }
 
 // Sink says where the energy of a loss goes.

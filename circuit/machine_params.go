@@ -1,6 +1,10 @@
 package circuit
 
-import "barlitre/machines/units"
+import (
+	"slices"
+
+	"barlitre/machines/units"
+)
 
 const (
 	goodPiston = "piston machine in good order, common practice"
@@ -10,8 +14,13 @@ const (
 // machineParams are the parameters that every displacement machine has. The defaults of the coefficients hold where
 // neither a family, a best point nor measured points are given.
 func machineParams(share string) []Param {
-	sized := []Param{
-		{Key: "displacement", Title: "Displacement", Symbol: "V", Dim: units.DisplacementPerRev, Need: true, Above: true, Max: 0.02, Text: "geometric, at full setting"},
+	sized := Plate.of(Param{Key: "displacement", Title: "Displacement", Symbol: "V", Dim: units.DisplacementPerRev, Need: true, Above: true, Max: 0.02, Text: "geometric, at full setting"})
+	return slices.Concat(sized, basisParams(), coefficientParams(), wearParams(share), limitParams())
+}
+
+// basisParams say what the coefficients that are not given follow from.
+func basisParams() []Param {
+	return LossBasis.of([]Param{
 		{Key: "family", Title: "Family", Type: Choice, Choices: familyWords(), Text: "takes the coefficients that are not given from the best point of such a machine in good order"},
 		{Key: "best_volumetric", Title: "Best volumetric efficiency", Symbol: "ηv", Dim: units.Ratio, Above: true, Max: 1, Text: "at the best point; sets the slip. Default: " + ofFamily},
 		{Key: "best_hydromechanical", Title: "Best hydromechanical efficiency", Symbol: "ηhm", Dim: units.Ratio, Above: true, Max: 1, Text: "at the best point; sets the friction. Default: " + ofFamily},
@@ -21,13 +30,12 @@ func machineParams(share string) []Param {
 		{Key: "points", Title: "Measured points", Type: FileRef, Text: "CSV file beside the audit file with speed, pressure difference, flow, torque and, if it varies, displacement; the coefficients that are not given are fitted to them"},
 		{Key: "points_as", Title: "Points used as", Type: Choice, Default: "law", Choices: []string{"law", "map"}, Text: "law: the fitted law everywhere; map: the measured losses where points lie, the fitted law away from them"},
 		{Key: "points_viscosity", Title: "Viscosity of the points", Dim: units.DynamicViscosity, Default: "26 mPa s", Origin: Assumed, Source: "ISO VG 46 at 50 C", Above: true, Max: 10, Text: "of the oil while they were measured, where the file has no such column"},
-	}
-	return append(sized, append(coefficientParams(share), limitParams()...)...)
+	}...)
 }
 
-// coefficientParams are the coefficients of the loss law and what changes them.
-func coefficientParams(share string) []Param {
-	return []Param{
+// coefficientParams are the coefficients of the loss law.
+func coefficientParams() []Param {
+	return Coefficients.of([]Param{
 		{Key: "slip", Title: "Slip coefficient", Symbol: "Cs", Dim: units.Ratio, Default: "1.5e-8", Origin: Assumed, Source: goodPiston, Max: 1e-4, Text: "laminar leakage, of displacement, pressure and 1/viscosity"},
 		{Key: "turbulent_slip", Title: "Turbulent slip", Symbol: "Cst", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "counted in the laminar slip", Max: 1e-2, Text: "leakage by the root of the pressure, through short gaps"},
 		{Key: "compression", Title: "Compression factor", Symbol: "kB", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "counted in the laminar slip; 1 where all compression of the swept volume is lost", Max: 10, Text: "swept oil that is compressed and whose energy is not given back, by swept volume"},
@@ -36,17 +44,23 @@ func coefficientParams(share string) []Param {
 		{Key: "viscous", Title: "Viscous friction", Symbol: "Cv", Dim: units.Ratio, Default: "6.5e4", Origin: Assumed, Source: goodPiston, Max: 1e8, Text: "torque by displacement, viscosity and speed"},
 		{Key: "hydrodynamic", Title: "Hydrodynamic torque", Symbol: "Ch", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "counted in the viscous friction", Max: 1e5, Text: "torque by setting, density and the square of speed"},
 		{Key: "drag", Title: "Constant friction", Symbol: "Tc", Dim: units.Torque, Default: "1.5 N m", Origin: Assumed, Source: "seals and bearings, common practice", Max: 1e4, Text: "torque that does not depend on pressure or speed"},
+	}...)
+}
+
+// wearParams change the slip of a machine, and say where it goes.
+func wearParams(share string) []Param {
+	return LossBasis.of([]Param{
 		{Key: "wear", Title: "Wear", Symbol: "W", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "as new", Above: true, Max: 100, Text: "multiplies laminar and turbulent slip"},
 		{Key: "drain_flow", Title: "Measured case-drain flow", Symbol: "qD", Dim: units.Flow, Above: true, Max: 0.1, Text: "sets laminar and turbulent slip, in place of wear; needs drain_pressure"},
 		{Key: "drain_pressure", Title: "Pressure of that measurement", Symbol: "pD", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "pressure difference of the machine while its drain was measured"},
 		{Key: "drain_temperature", Title: "Temperature of that measurement", Dim: units.Temperature, Min: 233.15, Max: 423.15, Text: "of the oil; when not given its working temperature"},
 		{Key: "case_share", Title: "Slip to the case", Symbol: "kc", Dim: units.Ratio, Default: share, Origin: Assumed, Source: "share of the slip that leaves by the case drain, common practice", Max: 1, Text: "the rest slips from port to port; an open drain goes to tank"},
-	}
+	}...)
 }
 
 // limitParams are what a machine stands.
 func limitParams() []Param {
-	return []Param{
+	return Limits.of([]Param{
 		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
 		{Key: "max_speed", Title: "Highest speed", Symbol: "n2", Dim: units.AngularSpeed, Above: true, Max: 2000, Text: "highest permitted speed"},
 		{Key: "min_speed", Title: "Lowest speed", Symbol: "n1", Dim: units.AngularSpeed, Max: 2000, Text: "lowest permitted speed while it carries pressure"},
@@ -54,7 +68,7 @@ func limitParams() []Param {
 		{Key: "optimum_viscosity_from", Title: "Optimum viscosity from", Symbol: "ν2", Dim: units.KinematicViscosity, Max: 1, Text: "lower end of the range that its maker recommends, often 16 mm2/s"},
 		{Key: "optimum_viscosity_to", Title: "Optimum viscosity to", Symbol: "ν3", Dim: units.KinematicViscosity, Max: 1, Text: "upper end of that range, often 36 mm2/s"},
 		{Key: "start_viscosity", Title: "Highest viscosity at start", Symbol: "ν4", Dim: units.KinematicViscosity, Default: "1000 mm2/s", Origin: Assumed, Source: "common practice, no source; its maker's figure comes first", Above: true, Max: 1, Text: "thickest oil it may start with, at the start temperature of the oil"},
-	}
+	}...)
 }
 
 var machineLosses = []LossKind{

@@ -74,6 +74,16 @@ func (d *Document) Set(target, quantity string) error {
 	return d.Edit(setName(d.File(), target), func(f *audit.File) error { return f.Set(target, quantity) })
 }
 
+// Put is Set for the fields of a screen, as audit.File.Put does: it adds a section that the file lacks.
+func (d *Document) Put(target, quantity string) error {
+	return d.Edit(setName(d.File(), target), func(f *audit.File) error { return f.Put(target, quantity) })
+}
+
+// Drop takes a value out, so that its default holds again, as audit.File.Drop does.
+func (d *Document) Drop(target string) error {
+	return d.Edit(strings.Replace(setName(d.File(), target), "Change", "Drop", 1), func(f *audit.File) error { return f.Drop(target) })
+}
+
 // Step is Set for one of many small steps of a value; see EditMerging.
 func (d *Document) Step(target, quantity string) error {
 	return d.EditMerging("set "+target, setName(d.File(), target), func(f *audit.File) error { return f.Set(target, quantity) })

@@ -34,8 +34,8 @@ type closable struct {
 
 func (c *closable) shown() bool { return c.open }
 
-// keep remembers an open dialog, for Escape and for the menu.
-func (f *Frame) keep(d dialog.Dialog) {
+// Keep remembers an open dialog, for Escape and for the menu.
+func (f *Frame) Keep(d dialog.Dialog) {
 	c := &closable{d, true}
 	d.SetOnClosed(func() { c.open = false })
 	f.boxes = append(f.boxes[:0:0], append(f.openBoxes(), c)...)
@@ -90,7 +90,7 @@ func (f *Frame) ask(title string, content fyne.CanvasObject, answers ...answer) 
 	}
 	b.d.SetButtons(buttons)
 	b.d.Show()
-	f.keep(b.d)
+	f.Keep(b.d)
 	first := buttons[0].(fyne.Focusable)
 	f.win.Canvas().Focus(first)
 	post(func() { // a click that led here takes the focus away once it is over

@@ -115,7 +115,7 @@ func (f *Frame) showFiles(d *dialog.FileDialog, title, verb string) {
 	k, room := widgets.Scale(), f.win.Canvas().Size()
 	d.Resize(fyne.NewSize(min(760*k, room.Width-40), min(520*k, room.Height-40)))
 	d.Show()
-	f.keep(d)
+	f.Keep(d)
 }
 
 // save saves, asking for a name where there is none, then goes on.

@@ -7,6 +7,7 @@ import (
 	"time"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/dialog"
 	"fyne.io/fyne/v2/driver/desktop"
 	"fyne.io/fyne/v2/test"
 
@@ -37,6 +38,9 @@ type bench struct {
 	system  units.System
 	said    []string
 	failed  []error
+	kept    []dialog.Dialog
+
+	explained []audit.Figure
 }
 
 var _ station.Context = (*bench)(nil)
@@ -146,7 +150,8 @@ func (b *bench) Local(text string) string {
 }
 func (b *bench) Palette() figures.Palette { return widgets.Theme{Dark: b.dark}.Palette() }
 func (b *bench) Go(string)                {}
-func (b *bench) Explain(audit.Figure)     {}
+func (b *bench) Explain(f audit.Figure)   { b.explained = append(b.explained, f) }
+func (b *bench) Keep(d dialog.Dialog)     { b.kept = append(b.kept, d) }
 func (b *bench) Say(text string)          { b.said = append(b.said, text) }
 func (b *bench) Fail(err error)           { b.failed = append(b.failed, err) }
 

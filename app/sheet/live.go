@@ -103,8 +103,14 @@ func powerAt(p *audit.Plot, t float64, of func(circuit.Channel) bool) float64 {
 			sum += p.Powers[i].At(t)
 		}
 	}
+	if math.Abs(sum) < smallestPower {
+		return 0
+	}
 	return sum
 }
+
+// smallestPower [W] is what rounding leaves of none.
+const smallestPower = 1e-6
 
 // blockValues are pressures and flows at the ports, what else the block tells, its
 // heat now and over the cycle.

@@ -24,6 +24,7 @@ type numberRow struct {
 	more    *link
 	extra   []*fieldRow
 	about   *widget.Label
+	drop    *link // takes the value out
 	filling bool
 }
 
@@ -39,6 +40,8 @@ func newNumberRow(p *panel, circuitName, block string, q *circuit.Param, target 
 	r.more = newLink("more", r.toggle)
 	widgets.Name(r.more, "field."+q.Key+".more")
 	r.head.Add(r.more)
+	r.drop = widgets.Name(newLink("Drop this value; its default then holds", r.takeOut), "field."+q.Key+".drop")
+	r.drop.lead = true
 	r.stack(container.New(columns{0.5, 0.5}, r.field, r.origin))
 	return r
 }
@@ -89,8 +92,11 @@ func (r *numberRow) number(si float64, u units.Unit) string {
 func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 	u := r.unitNow()
 	v, given := r.now()
-	r.fillOrigin(v, given)
+	if r.drop != nil {
+		show(r.drop, given && !r.param.Need)
+	}
 	if given {
+		r.fillOrigin(v, true)
 		return r.number(v.SI, u), r.givenHint(v, u), "", u.Label()
 	}
 	b := r.p.block(r.circuit, r.block)
@@ -98,8 +104,9 @@ func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 		return "", "", "", u.Label()
 	}
 	v, _, ok := circuit.KindNamed(b.Kind).Value(b, r.param.Key)
+	r.fillOrigin(v, false)
 	if !ok {
-		return "", "not given; " + r.rangeText(u), "", u.Label()
+		return "", "not given; " + r.param.Text + join("; follows from ", r.param.Derived) + "; " + r.rangeText(u), "", u.Label()
 	}
 	return "", "default" + reason(v) + "; " + r.rangeText(u), r.number(v.SI, u), u.Label()
 }
@@ -157,12 +164,8 @@ func (r *numberRow) fillOrigin(v circuit.Value, given bool) {
 	}
 	r.filling = true
 	defer func() { r.filling = false }()
-	origin := v.Origin
-	if !given {
-		origin = r.param.Origin
-	}
-	if r.origin.Selected != string(origin) {
-		r.origin.Selected = string(origin)
+	if r.origin.Selected != string(v.Origin) {
+		r.origin.Selected = string(v.Origin)
 		r.origin.Refresh()
 	}
 	if given == r.origin.Disabled() {
@@ -196,6 +199,16 @@ func (r *numberRow) take(text string) error {
 	return r.p.s.ctx.Doc().Set(r.target, units.FileText(si, u))
 }
 
+// takeOut drops the value from the file.
+func (r *numberRow) takeOut() {
+	err := r.p.s.ctx.Doc().Drop(r.target)
+	r.fill()
+	if err != nil {
+		r.say(err.Error(), true)
+	}
+	r.p.relay()
+}
+
 func (r *numberRow) setOrigin(text string) {
 	if r.filling || text == "" {
 		return
@@ -214,6 +227,7 @@ func (r *numberRow) toggle() {
 			r.content.Remove(x.content)
 		}
 		r.content.Remove(r.about)
+		r.content.Remove(r.drop)
 		r.extra = nil
 		r.more.SetText("more")
 	} else {
@@ -225,6 +239,7 @@ func (r *numberRow) toggle() {
 			x.fill()
 			r.content.Add(x.content)
 		}
+		r.content.Add(r.drop)
 		r.more.SetText("less")
 	}
 	r.p.relay()

@@ -23,23 +23,29 @@ type panel struct {
 	scroll  *container.Scroll
 	live    *live
 	service *service
+	asked   *asked
+	year    *year
+	gallery *gallery
+	parts   []*part
+	links   *fyne.Container // to the parts
 	rows    []row
-	all     *link
+	groups  []*group
 	content *fyne.Container
 
-	shows    string            // circuit and block that the rows are of
-	expanded bool              // values left at their defaults are listed as well
-	drafts   map[string]string // refused texts, by target
+	shows    string                   // circuit and block that the rows are of
+	expanded map[circuit.Section]bool // values left at their defaults are listed as well
+	drafts   map[string]string        // refused texts, by target
 }
 
 func newPanel(s *Station) *panel {
-	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}}
+	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}, expanded: map[circuit.Section]bool{}}
 	p.head = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), p.drawHead), "sheet.title")
 	p.live = newLive(p)
-	p.service = newService(p)
+	p.newParts()
 	p.list = container.New(tight{})
 	p.scroll = container.NewVScroll(container.New(edges{}, p.list))
-	inner := container.NewBorder(p.head, nil, nil, nil, p.scroll)
+	top := container.New(tight{}, p.head, p.links)
+	inner := container.NewBorder(top, nil, nil, nil, p.scroll)
 	p.content = container.NewStack(p.paper, container.New(inset{4}, inner))
 	return p
 }
@@ -81,17 +87,20 @@ func (p *panel) at() (c *audit.CircuitEntry, b *circuit.Block) {
 // changed brings in what changed.
 func (p *panel) changed(w station.What) {
 	if w.Has(station.Model | station.Selection | station.Settings) {
-		if shows := p.key(); shows != p.shows || w.Has(station.Settings) {
+		switch shows := p.key(); {
+		case shows != p.shows || w.Has(station.Settings):
 			p.shows = shows
 			p.rebuild()
-		} else {
+		case p.hidden():
+			p.rebuildHere()
+		default:
 			p.fill()
 		}
 	}
 	if w.Has(station.Model | station.Solution | station.Selection | station.Settings) {
 		p.warn()
 		p.live.replot()
-		p.service.update()
+		p.bringParts()
 	}
 	p.live.moved()
 	p.relay()
@@ -113,7 +122,7 @@ func (p *panel) key() string {
 // rebuild makes the rows anew.
 func (p *panel) rebuild() {
 	p.leave()
-	p.rows, p.all = nil, nil
+	p.rows, p.groups = nil, nil
 	c, b := p.at()
 	switch {
 	case c == nil:
@@ -128,14 +137,18 @@ func (p *panel) rebuild() {
 	}
 	for _, r := range p.rows {
 		r.fill()
-		p.list.Add(r.object())
+		if b == nil {
+			p.list.Add(r.object())
+		}
 	}
-	if p.all != nil {
-		p.list.Add(p.all)
+	for _, g := range p.groups {
+		for _, o := range g.objects() {
+			p.list.Add(o)
+		}
 	}
+	p.summarize()
 	if b != nil {
-		p.list.Add(p.live.content)
-		p.list.Add(p.service.content)
+		p.listParts()
 	}
 	for _, r := range p.rows {
 		if f, ok := r.(interface{ restore() }); ok {
@@ -166,6 +179,7 @@ func (p *panel) fill() {
 	for _, r := range p.rows {
 		r.fill()
 	}
+	p.summarize()
 	p.head.Refresh()
 }
 
@@ -218,10 +232,11 @@ func (p *panel) showParameter(key string) {
 		}
 		return nil
 	}
-	if has() == nil && p.all != nil {
-		p.expanded = true
-		p.rebuild()
-		p.relay()
+	if _, b := p.at(); has() == nil && b != nil {
+		if q := circuit.KindNamed(b.Kind).Param(key); q != nil {
+			p.expanded[q.Section] = true
+			p.rebuildHere()
+		}
 	}
 	r := has()
 	if w := p.s.ctx.Window(); r != nil && w != nil && p.s.panelOpen() {

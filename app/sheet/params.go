@@ -1,12 +1,10 @@
 package sheet
 
 import (
-	"fmt"
 	"slices"
 	"unicode"
 	"unicode/utf8"
 
-	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/circuit"
 )
@@ -20,33 +18,53 @@ func lower(s string) string {
 	return string(unicode.ToLower(first)) + s[n:]
 }
 
-// blockRows makes the rows of a block: what was given or must be, and when asked for
-// what is left at its default.
+// blockRows makes the rows of a block by section: what was given or must be, and when asked for what is left at its
+// default.
 func (p *panel) blockRows(c *audit.CircuitEntry, b *circuit.Block) {
 	k := circuit.KindNamed(b.Kind)
 	if k == nil {
 		return
 	}
-	later := 0
-	for i := range k.Params {
-		q := &k.Params[i]
-		if !p.expanded && !p.listed(c, b, q) {
-			later++
+	for _, section := range append([]circuit.Section{""}, circuit.Sections...) {
+		g := &group{section: section}
+		for i := range k.Params {
+			q := &k.Params[i]
+			switch {
+			case q.Section != section:
+			case p.expanded[section] || p.listed(c, b, q):
+				g.rows = append(g.rows, p.paramRow(c.Name, b.ID, q))
+				if !p.listed(c, b, q) {
+					g.later = append(g.later, q)
+				}
+			default:
+				g.later = append(g.later, q)
+			}
+		}
+		if len(g.rows)+len(g.later) > 0 {
+			p.dress(g)
+			p.groups = append(p.groups, g)
+			p.rows = append(p.rows, g.rows...)
+		}
+	}
+}
+
+// hidden reports whether a parameter that is worth a row has none, as after undo.
+func (p *panel) hidden() bool {
+	c, b := p.at()
+	if c == nil || b == nil {
+		return false
+	}
+	for _, g := range p.groups {
+		if p.expanded[g.section] {
 			continue
 		}
-		p.rows = append(p.rows, p.paramRow(c.Name, b.ID, q))
+		for _, q := range g.later {
+			if p.listed(c, b, q) {
+				return true
+			}
+		}
 	}
-	if later > 0 || p.expanded {
-		p.all = newLink("", func() {
-			p.expanded = !p.expanded
-			p.rebuild()
-			p.warn()
-			p.relay()
-		})
-		p.all.lead = true
-		p.all.SetText(pick(p.expanded, "Hide values left at their defaults", fmt.Sprintf("Show %d more values, left at their defaults", later)))
-		widgets.Name(p.all, "sheet.all")
-	}
+	return false
 }
 
 // listed tells whether a parameter is worth a row at once.
@@ -67,15 +85,17 @@ func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
 	if q.Type == circuit.Number {
 		return newNumberRow(p, circuitName, block, q, target)
 	}
-	options := q.Choices
-	if b := p.block(circuitName, block); q.Type == circuit.FileRef && b != nil && b.Word(q.Key) != "" {
-		options = []string{b.Word(q.Key)}
+	if q.Type == circuit.FileRef {
+		return newFileRow(p, circuitName, block, q, target)
 	}
+	options := slices.Clone(q.Choices)
 	if q.Type == circuit.AxisRef {
-		options = nil
 		for _, a := range p.s.ctx.Doc().File().Axes {
 			options = append(options, a.Name)
 		}
+	}
+	if q.Default == "" && !q.Need {
+		options = append([]string{none}, options...)
 	}
 	r := &choiceRow{selectRow: newSelectRow(p, q.Title, "field."+q.Key, target, options), param: q}
 	r.value = func() (string, string) {
@@ -83,13 +103,21 @@ func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
 		if b == nil {
 			return "", ""
 		}
-		if w := b.Word(q.Key); w != "" || q.Default == "" {
+		switch w := b.Word(q.Key); {
+		case w != "":
 			return w, q.Text
+		case q.Default == "" && !q.Need:
+			return none, q.Text
+		case q.Default == "":
+			return "", q.Text
 		}
 		return q.Default, "default" + reason(circuit.Value{Origin: q.Origin, Note: q.Source}) + join("; ", q.Text)
 	}
 	return r
 }
+
+// none is the choice that takes a word out of the file.
+const none = "–"
 
 type choiceRow struct {
 	*selectRow

@@ -81,16 +81,19 @@ func (columns) MinSize(objects []fyne.CanvasObject) fyne.Size {
 	return m
 }
 
-// headLine is the line above a field: title, unit, and a link at its end.
+// headLine is the line above a field: title, unit, and links at its end.
 type headLine struct{}
 
 func (headLine) Layout(objects []fyne.CanvasObject, size fyne.Size) {
-	x := float32(0)
+	x, right := float32(0), size.Width
 	for i, o := range objects {
 		m := o.MinSize()
-		if i == 2 {
-			o.Move(fyne.NewPos(size.Width-m.Width, size.Height-m.Height-2))
-			o.Resize(m)
+		if i >= 2 {
+			if o.Visible() {
+				right -= m.Width
+				o.Move(fyne.NewPos(right, size.Height-m.Height-2))
+				o.Resize(m)
+			}
 			continue
 		}
 		o.Move(fyne.NewPos(x, size.Height-m.Height-1))
@@ -240,7 +243,11 @@ func newSelectRow(p *panel, title, name, target string, options []string) *selec
 		if r.filling {
 			return
 		}
-		if err := p.s.ctx.Doc().Set(target, text); err != nil {
+		change := func() error { return p.s.ctx.Doc().Set(target, text) }
+		if text == none {
+			change = func() error { return p.s.ctx.Doc().Drop(target) }
+		}
+		if err := change(); err != nil {
 			r.fill()
 			r.say(err.Error(), true)
 			p.relay()

@@ -43,8 +43,7 @@ func (v *service) update() {
 		}
 	}
 	has := len(v.shown.Plot.Lanes) > 0
-	show(v.figure, has)
-	show(v.verdict, has)
+	show(v.content, has)
 	if has {
 		v.verdict.SetText(v.p.s.ctx.Local(v.shown.Verdict))
 		v.figure.SetMin(fyne.NewSize(100, float32(v.shown.Height(serviceWidth))))

@@ -282,7 +282,9 @@ const helpText = `Two circuits, one duty, one clock: the circuit as found on the
 
 The tint of a line is its pressure, its width the flow; the amber disc at a block is the power it turns to heat, or over a cycle its energy. Both sheets have the same scales.
 
-Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
+Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. The values of machines and drives stand in sections; “more” on a section shows those left at their defaults, “more” on a value lets it be dropped, so that its default holds again. Below stand what it does now, what the duty asks of it against what is permitted, its year beside that of the same machine in the other circuit, and pictures; the words on top lead there. With nothing selected the panel has the oil.
+
+Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
 
 Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
 

@@ -142,7 +142,7 @@ func TestOriginChoiceAndNote(t *testing.T) {
 	if got := v(); !close(u.FromSI(got.Low), 4, 1e-9) || !close(u.FromSI(got.High), 22, 1e-9) || got.Note != "seen on the bench" {
 		t.Errorf("low %g, high %g, note %q", u.FromSI(got.Low), u.FromSI(got.High), got.Note)
 	}
-	b.s.panel.all.do()
+	b.s.panel.groups[0].toggle.do()
 	if r := b.field("vented"); !r.origin.Disabled() || r.field.Text != "" {
 		t.Errorf("a value that is not given: origin open %v, field %q", !r.origin.Disabled(), r.field.Text)
 	}

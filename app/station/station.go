@@ -5,6 +5,7 @@ package station
 
 import (
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/dialog"
 
 	"barlitre/app/document"
 	"barlitre/audit"
@@ -75,6 +76,8 @@ type Context interface {
 
 	// Go shows a station by name.
 	Go(name string)
+	// Keep takes a dialog that the station has shown: Escape then closes it, and the menu waits.
+	Keep(d dialog.Dialog)
 	// Explain opens the calculation of a figure.
 	Explain(f audit.Figure)
 	// Say shows a short message in the frame; Fail shows what went wrong and what is still safe.

@@ -89,7 +89,8 @@ func (f EfficiencyMap) Draw(p pen.Pen, w, h float64, pal Palette) PlotArea {
 // lay fixes the places and samples the map.
 func (d *mapLayout) lay(w, h float64) {
 	d.x, d.y = 44, mapHead
-	d.w, d.h = w-d.x-14, h-mapHead-axisHeight-mapFoot-4
+	d.w = w - d.x - 14
+	d.h = h - mapHead - axisHeight - mapFoot - 4 - legendStep*float64(max(0, len(d.legendLines(d.x+d.w))-2))
 	d.grid = make([][]float64, mapRows+1)
 	for j := range d.grid {
 		d.grid[j] = make([]float64, mapColumns+1)

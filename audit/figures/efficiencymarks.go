@@ -1,6 +1,7 @@
 package figures
 
 import (
+	"image/color"
 	"math"
 	"slices"
 	"strings"
@@ -61,7 +62,7 @@ func (d *mapLayout) limits() {
 
 // frame draws title, axes and legend.
 func (d *mapLayout) frame() {
-	d.p.Text(pen.Pt{Y: headSize}, pen.Shorten(d.Title, headSize, true, d.x+d.w), headSize, d.pal.Ink, pen.Left, true)
+	title(d.p, d.Title, d.x+d.w, d.pal.Ink)
 	d.p.Text(pen.Pt{Y: headSize + textSize + 3}, pen.Shorten(d.Subtitle, smallSize, false, d.x+d.w), smallSize, d.pal.Secondary, pen.Left, false)
 	k := pow10(thousands(d.ToY))
 	at, dec := ticks(0, d.ToY/k, int(max(2, min(8, d.h/32))))
@@ -77,25 +78,60 @@ func (d *mapLayout) frame() {
 // legend says what the axes and signs are.
 func (d *mapLayout) legend() {
 	y := d.y + d.h + axisHeight + 12
-	line := func(text string) {
-		d.p.Text(pen.Pt{Y: y}, pen.Shorten(text, smallSize, false, d.x+d.w), smallSize, d.pal.Secondary, pen.Left, false)
-		y += smallSize + 3
+	for _, text := range d.legendLines(d.x + d.w) {
+		d.p.Text(pen.Pt{Y: y}, text, smallSize, d.pal.Secondary, pen.Left, false)
+		y += legendStep
 	}
-	line(d.Y + inUnit(scaledUnit(thousands(d.ToY), d.YUnit)) + " over " + d.X + "; contours: overall efficiency in %")
+}
+
+// legendStep is from one line of a legend to the next.
+const legendStep = smallSize + 3
+
+// legendLines are the lines of the legend in a width.
+func (f EfficiencyMap) legendLines(w float64) []string {
+	out := wrapped(f.Y+inUnit(scaledUnit(thousands(f.ToY), f.YUnit))+" over "+f.X+"; contours: overall efficiency in %", smallSize, w)
 	var signs []string
-	if len(d.Points) > 0 && d.PointsAre != "" {
-		signs = append(signs, "discs: "+d.PointsAre)
+	if len(f.Points) > 0 && f.PointsAre != "" {
+		signs = append(signs, "discs: "+f.PointsAre)
 	}
-	if slices.ContainsFunc(d.Points, func(q MapPoint) bool { return q.Off }) {
-		signs = append(signs, "hollow: "+d.OffAre)
+	if slices.ContainsFunc(f.Points, func(q MapPoint) bool { return q.Off }) {
+		signs = append(signs, "hollow: "+f.OffAre)
 	}
-	if slices.ContainsFunc(slices.Concat(d.LimitsX, d.LimitsY), finite) {
+	if slices.ContainsFunc(slices.Concat(f.LimitsX, f.LimitsY), finite) {
 		signs = append(signs, "dashes: its limits")
 	}
-	if d.Inside != nil {
+	if f.Inside != nil {
 		signs = append(signs, "pale: extrapolated")
 	}
-	line(strings.Join(signs, "; "))
+	return append(out, wrapped(strings.Join(signs, "; "), smallSize, w)...)
+}
+
+// wrapped breaks a text between words into lines of a width; a word that is longer is shortened.
+func wrapped(text string, size, w float64) []string {
+	var out []string
+	line := ""
+	for _, word := range strings.Fields(text) {
+		if next := strings.TrimSpace(line + " " + word); line == "" || pen.TextWidth(next, size, false) <= w {
+			line = next
+			continue
+		}
+		out, line = append(out, pen.Shorten(line, size, false, w)), word
+	}
+	if line != "" {
+		out = append(out, pen.Shorten(line, size, false, w))
+	}
+	return out
+}
+
+// title writes the title of a map, a little smaller where it would not fit.
+func title(p pen.Pen, text string, w float64, c color.NRGBA) {
+	size := headSize
+	for _, smaller := range []float64{textSize, smallSize} {
+		if pen.TextWidth(text, size, true) > w {
+			size = smaller
+		}
+	}
+	p.Text(pen.Pt{Y: headSize}, pen.Shorten(text, size, true, w), size, c, pen.Left, true)
 }
 
 func inUnit(unit string) string {

@@ -78,7 +78,11 @@ func empty(p pen.Pen, w, h float64, text string, pal Palette) {
 func axis(p pen.Pen, x0, x1, y, side, lo, hi float64, unit string, pal Palette) {
 	hairline(p, x0, y, x1, y, pal.Edge)
 	exp := thousands(max(-lo, hi))
-	at, decimals := ticks(lo/pow10(exp), hi/pow10(exp), int(max(1, min(10, (x1-x0)/80))))
+	n := int(max(1, min(10, (x1-x0)/80)))
+	at, decimals := ticks(lo/pow10(exp), hi/pow10(exp), n)
+	if len(at) < 2 { // one number tells no scale
+		at, decimals = ticks(lo/pow10(exp), hi/pow10(exp), 2*n)
+	}
 	gap := " "
 	if exp != 0 {
 		gap = "·"

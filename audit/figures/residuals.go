@@ -56,8 +56,8 @@ func (f Residuals) Draw(p pen.Pen, w, h float64, pal Palette) {
 		}
 		p.Circle(pen.Pt{X: px(q.X), Y: py(q.Y)}, 2.6, pal.Pressure(share), pen.Stroke{})
 	}
-	p.Text(pen.Pt{Y: headSize}, pen.Shorten(f.Title, headSize, true, fw), headSize, pal.Ink, pen.Left, true)
-	p.Text(pen.Pt{Y: headSize + textSize + 3}, pen.Shorten("efficiency of the law less that measured, points; band: rms "+number(f.RMS, 2), smallSize, false, fw), smallSize, pal.Secondary, pen.Left, false)
+	title(p, f.Title, fw, pal.Ink)
+	p.Text(pen.Pt{Y: headSize + textSize + 3}, pen.Shorten("law less measured, efficiency points; band: rms "+number(f.RMS, 2), smallSize, false, fw), smallSize, pal.Secondary, pen.Left, false)
 	axis(p, x0, x0+pw, y0+ph, 12, 0, 1.05*toX, scaledUnit(thousands(1.05*toX), f.XUnit), pal)
 	text := "over " + f.X + "; tint: " + f.Group + " " + number(lo, 0) + " to " + number(hi, 0) + " " + f.GroupUnit
 	p.Text(pen.Pt{Y: y0 + ph + axisHeight + 12}, pen.Shorten(text, smallSize, false, fw), smallSize, pal.Secondary, pen.Left, false)

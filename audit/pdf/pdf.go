@@ -11,6 +11,7 @@ import (
 	"github.com/jung-kurt/gofpdf"
 
 	"barlitre/audit"
+	"barlitre/audit/figures"
 	"barlitre/audit/pen"
 	"barlitre/machines/units"
 )
@@ -24,6 +25,7 @@ const (
 	Basis      Section = "What the figures rest on"
 	Circuits   Section = "Circuits"
 	Energy     Section = "Where the energy goes"
+	Machines   Section = "Machines and drives"
 	Duty       Section = "Duty and course over time"
 	Heat       Section = "Heat and cooler"
 	Money      Section = "Money"
@@ -37,7 +39,7 @@ const cautionPages Section = "Cautions and limits of use"
 
 // Sections lists all sections in the order of printing; the slice is the caller's.
 func Sections() []Section {
-	return []Section{Decision, Basis, Circuits, Energy, Duty, Heat, Money, Parameters, Findings, Method}
+	return []Section{Decision, Basis, Circuits, Energy, Machines, Duty, Heat, Money, Parameters, Findings, Method}
 }
 
 // Options of Write; only Date is needed.
@@ -121,11 +123,13 @@ type layout struct {
 	total  int             // pages in all, as the last printing found them
 	starts map[Section]int // page on which a section starts
 	drawn  *drawings       // nil before they are asked for
+
+	pictures map[int][]figures.Picture // of the machines, by circuit
 }
 
 func newLayout(s *audit.Solution, opt Options) *layout {
 	l := &layout{s: s, r: s.Report(opt.System), without: opt.Without, date: opt.Date.Format("2006-01-02"),
-		site: opt.Site, customer: opt.Customer, author: opt.Author, room: 1}
+		site: opt.Site, customer: opt.Customer, author: opt.Author, room: 1, pictures: map[int][]figures.Picture{}}
 	for own, file := range map[*string]string{&l.site: l.r.Site.Name, &l.customer: l.r.Site.Customer, &l.author: l.r.Site.Author} {
 		if *own == "" {
 			*own = file
@@ -183,7 +187,7 @@ func (l *layout) print(to paper) {
 		Section
 		draw func()
 	}{
-		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Duty, l.duties}, {Heat, l.heat},
+		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat},
 		{Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {Method, l.method},
 	} {
 		if slices.Contains(l.without, part.Section) {
@@ -210,6 +214,8 @@ func (l *layout) follow(s Section) float64 {
 		return l.firstDrawings()
 	case s == Energy && len(steps) > 0:
 		return 2 + figureLeast*steps[0].Height()
+	case s == Machines && l.firstMaps() > 0:
+		return l.firstMaps()
 	case s == Duty && len(l.s.File.Duties) > 0:
 		d := l.s.File.Duties[0]
 		_, name := l.headLines(2, dutyHead+d.Name)

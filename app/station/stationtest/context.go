@@ -8,6 +8,7 @@ import (
 	"time"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/dialog"
 	"fyne.io/fyne/v2/test"
 
 	"barlitre/app/document"
@@ -32,6 +33,7 @@ type Context struct {
 	Said      []string
 	Failed    []error
 	Went      []string
+	Kept      []dialog.Dialog
 }
 
 // New opens a sample, "" for the empty audit, and waits until it is solved.
@@ -120,6 +122,7 @@ func (c *Context) Select(int, string)       {}
 func (c *Context) System() units.System     { return c.Units }
 func (c *Context) Go(name string)           { c.Went = append(c.Went, name) }
 func (c *Context) Explain(f audit.Figure)   { c.Explained = append(c.Explained, f) }
+func (c *Context) Keep(d dialog.Dialog)     { c.Kept = append(c.Kept, d) }
 func (c *Context) Say(text string)          { c.Said = append(c.Said, text) }
 func (c *Context) Fail(err error)           { c.Failed = append(c.Failed, err) }
 func (c *Context) Palette() figures.Palette { return widgets.Theme{Dark: c.Dark}.Palette() }

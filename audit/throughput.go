@@ -1,0 +1,146 @@
+package audit
+
+import (
+	"math"
+
+	"barlitre/circuit"
+)
+
+// Throughput is what passes a machine or drive over a cycle: what enters it on either side, what leaves it, and how long
+// it works. In − Out is what it loses while it runs; a start is not in it.
+type Throughput struct {
+	In, Out float64 // J
+	Running float64 // s, with power or a loss
+	Part    float64 // s of it below PartLoad of its rated power; NaN where it has none
+}
+
+// PartLoad is the share of the rated power below which a drive counts as being at part load (our choice).
+const PartLoad = 0.3
+
+// throughputKinds have one side that a signal tells the power of; sign is 1 where power that enters there is positive.
+var throughputKinds = map[string]struct {
+	signal string
+	sign   float64
+}{
+	"pump": {"shaft", 1}, "charge_pump": {"shaft", 1}, "motor": {"shaft", 1},
+	"electric_motor": {"shaft", -1}, "engine": {"shaft", -1}, "converter": {"electric", 1},
+}
+
+// passage is the circuit.Receiver that sums up throughputs.
+type passage struct {
+	through []passing
+	t       float64
+	begun   bool
+}
+
+type passing struct {
+	block       string
+	signal      int
+	sign, rated float64
+	losses      []int // channels
+	last        [4]float64
+	sum         [4]float64 // integrals of the powers in and out, and of the time that it runs, and at part load
+}
+
+func newPassage(c *circuit.Circuit, signals []circuit.Signal, channels []circuit.Channel) *passage {
+	out := &passage{}
+	for i := range c.Blocks {
+		b := &c.Blocks[i]
+		kind, ok := throughputKinds[b.Kind]
+		if !ok {
+			continue
+		}
+		p := passing{block: b.ID, signal: -1, sign: kind.sign, rated: math.NaN()}
+		if v, given := b.Values["rated_power"]; given {
+			p.rated = v.SI
+		}
+		for k, s := range signals {
+			if s.Block == b.ID && s.What == kind.signal && s.Port == "" {
+				p.signal = k
+			}
+		}
+		for k, ch := range channels {
+			if ch.Role == circuit.Loss && ch.Block == b.ID && ch.Kind != "gearbox" { // which lies beyond its shaft
+				p.losses = append(p.losses, k)
+			}
+		}
+		if p.signal >= 0 {
+			out.through = append(out.through, p)
+		}
+	}
+	return out
+}
+
+// Sample books by the trapezoid rule.
+func (o *passage) Sample(s *circuit.Sample) error {
+	dt := s.T - o.t
+	for i := range o.through {
+		p := &o.through[i]
+		now := p.at(s)
+		if o.begun && dt > 0 {
+			for k := range p.sum {
+				p.sum[k] += dt * (p.last[k] + now[k]) / 2
+			}
+		}
+		p.last = now
+	}
+	o.t, o.begun = s.T, true
+	return nil
+}
+
+// at returns the powers that enter and leave, and 1 while it runs, and 1 while it does so at part load.
+func (p *passing) at(s *circuit.Sample) (now [4]float64) {
+	loss, one := 0.0, p.sign*s.Signals[p.signal]
+	for _, k := range p.losses {
+		loss += s.Power[k]
+	}
+	if p.sign < 0 { // what enters at its other side
+		one = loss - one
+	}
+	other := one - loss
+	now[0] = math.Max(one, 0) + math.Max(-other, 0)
+	now[1] = math.Max(-one, 0) + math.Max(other, 0)
+	if now[0] > 0 {
+		now[2] = 1
+	}
+	if now[0] > 0 && now[1] < PartLoad*p.rated {
+		now[3] = 1
+	}
+	return now
+}
+
+// Part sums up the time steps after before, and the time from it to the first of them.
+func (o *passage) Part(_, _ int, before *circuit.Sample) circuit.Receiver {
+	p := &passage{}
+	for _, q := range o.through {
+		q.sum = [4]float64{}
+		p.through = append(p.through, q)
+	}
+	if before != nil {
+		_ = p.Sample(before) // never fails, and books nothing yet
+	}
+	return p
+}
+
+// Join adds what passed in a part.
+func (o *passage) Join(part circuit.Receiver) error {
+	for i, q := range part.(*passage).through {
+		for k, v := range q.sum {
+			o.through[i].sum[k] += v
+		}
+	}
+	return nil
+}
+
+// all lists the throughputs by block.
+func (o *passage) all() map[string]Throughput {
+	out := map[string]Throughput{}
+	for _, p := range o.through {
+		x := Throughput{In: p.sum[0], Out: p.sum[1], Running: p.sum[2], Part: p.sum[3]}
+		if math.IsNaN(p.rated) {
+			x.Part = math.NaN()
+		}
+		out[p.block] = x
+	}
+	return out
+}
