@@ -10,6 +10,7 @@ type gate struct {
 	opens           float64
 	free, back      throat
 	closed          float64 // linear resistance of the controlled way as s falls
+	seat            float64 // lift at which a shut gate leaks as much as a chamber at rest may: it fills a pocket behind it
 }
 
 func newGate(k *compiler, b *Block, V, C string, po, qN, dN, qV, qC, loss int) gate {
@@ -27,6 +28,7 @@ func (m *gate) bindGate(b *binding) {
 		m.back = throatOf(b.p[m.qN2]/b.scales.q, b.p[m.dN2]/b.scales.p)
 	}
 	m.closed = (100e5 / b.scales.p) / (b.p[m.qN] / b.scales.q)
+	m.seat = restLeak * m.closed
 	b.bound.Lo[m.q1], b.bound.Lo[m.q2] = 0, 0
 	b.bound.Lo[m.s], b.bound.Hi[m.s] = 0, 1
 }
@@ -39,11 +41,11 @@ func (m *gate) evalGate(e *eval) {
 	q2, s := e.branch(m.C, m.V, m.q2), e.val(m.s)
 	r, dr = m.back.at(q2)
 	dp := e.val(m.C) - e.val(m.V)
-	e.add(m.q2, r+(1-s)*m.closed*q2+minResistance*q2-s*dp)
+	e.add(m.q2, r+(1-s)*m.closed*q2+minResistance*q2-(s+m.seat)*dp)
 	e.d(m.q2, m.q2, dr+(1-s)*m.closed+minResistance)
 	e.d(m.q2, m.s, -m.closed*q2-dp)
-	e.d(m.q2, m.C, -s)
-	e.d(m.q2, m.V, s)
+	e.d(m.q2, m.C, -s-m.seat)
+	e.d(m.q2, m.V, s+m.seat)
 }
 
 func (m *gate) bookGate(k *booking) {

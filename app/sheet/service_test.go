@@ -20,11 +20,11 @@ func TestServicePanel(t *testing.T) {
 	b.s.setWide(false)
 	b.Select(1, "M1")
 	v := b.s.panel.service
-	if v.figure.Visible() || v.verdict.Visible() {
+	if v.content.Visible() {
 		t.Error("an electric motor shows the figure of a service")
 	}
 	b.Select(1, "S1")
-	if !v.figure.Visible() || !v.verdict.Visible() {
+	if !v.content.Visible() {
 		t.Fatal("the service shows no figure")
 	}
 	if text := v.verdict.Text; !strings.Contains(text, "gone at an idle loss of") || !strings.Contains(v.shown.Head, "S1 at its mean") {
