@@ -190,9 +190,13 @@ func renamedPorts(ports []circuit.PortRef, ids map[string]string) []circuit.Port
 }
 
 func groupText(g SheetGroup) string {
-	var members []string
-	for _, id := range g.Blocks {
-		members = append(members, encode(id, true))
+	return "{label: " + encode(g.Label, true) + ", blocks: " + idsText(g.Blocks) + "}"
+}
+
+func idsText(ids []string) string {
+	var words []string
+	for _, id := range ids {
+		words = append(words, encode(id, true))
 	}
-	return "{label: " + encode(g.Label, true) + ", blocks: [" + strings.Join(members, ", ") + "]}"
+	return "[" + strings.Join(words, ", ") + "]"
 }

@@ -152,20 +152,7 @@ func (d *draft) cut(m *yaml.Node, key string, beside bool, which func(i int) boo
 }
 
 // cutKey takes one key out of a mapping.
-func (d *draft) cutKey(m *yaml.Node, key string) error {
-	at := slices.IndexFunc(mappingKeys(m), func(k *yaml.Node) bool { return k.Value == key })
-	if at < 0 {
-		return nil
-	}
-	which := func(i int) bool { return i == at }
-	if m.Style&yaml.FlowStyle != 0 {
-		return d.do(d.src.cutFlow(m, which))
-	}
-	if len(m.Content) == 2 {
-		return errLayout // a mapping of a list would be left without a key
-	}
-	return d.do(d.src.cutLines(m, false, which))
-}
+func (d *draft) cutKey(m *yaml.Node, key string) error { return d.do(d.src.cutOne(m, key)) }
 
 // mappingKeys returns the keys of a mapping.
 func mappingKeys(m *yaml.Node) []*yaml.Node {

@@ -56,7 +56,7 @@ func (s *source) lineBreak() string {
 
 // start returns where a node begins.
 func (s *source) start(n *yaml.Node) (int, error) {
-	if n.Line < 1 || n.Line > len(s.starts) {
+	if n == nil || n.Line < 1 || n.Line > len(s.starts) {
 		return 0, errLayout
 	}
 	i := s.starts[n.Line-1]

@@ -34,7 +34,7 @@ func apply(data []byte, splices []splice) []byte {
 // Where the value has a mapping of its own (a quantity with its origin), its
 // "value" is set. written is the value as encode writes it.
 func (s *source) put(m *yaml.Node, key, written string) (splice, error) {
-	if m.Kind != yaml.MappingNode {
+	if m == nil || m.Kind != yaml.MappingNode {
 		return splice{}, errLayout
 	}
 	k, v := pair(m, key)
