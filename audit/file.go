@@ -185,8 +185,10 @@ type Cost struct {
 // CircuitEntry is a circuit with its part in the audit.
 type CircuitEntry struct {
 	*circuit.Circuit
-	Role Role
-	Cost Cost
+	Role   Role
+	Cost   Cost
+	Notes  []SheetNote
+	Groups []SheetGroup
 }
 
 // Open reads a file that an audit file names, by its path relative to the audit

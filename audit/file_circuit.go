@@ -27,10 +27,12 @@ func (r *reader) blockIDs(n *yaml.Node) {
 	}
 }
 
+const noCircuit = "there is no circuit; draw the one that was found"
+
 func (r *reader) circuits(n, root *yaml.Node) {
 	items := r.items(scope{}, n, "circuits", "circuits: [{name: As found, ...}]")
 	if len(items) == 0 && r.isAbsent(n) {
-		r.bad(scope{}, root, "circuits", "there is no circuit; draw the one that was found")
+		r.bad(scope{}, root, "circuits", noCircuit)
 	}
 	line := map[string]int{}
 	for i, item := range items {
@@ -48,7 +50,7 @@ func (r *reader) circuits(n, root *yaml.Node) {
 
 func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 	s := scope{circuit: name, where: fmt.Sprintf("circuit %q", name)}
-	f := r.fields(s, n, "", "name", "role", "note", "pump_at_rest", "retrofit_cost", "blocks", "lines")
+	f := r.fields(s, n, "", "name", "role", "note", "pump_at_rest", "retrofit_cost", "blocks", "lines", "notes", "groups")
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
 	}
@@ -78,6 +80,8 @@ func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 			c.Lines = append(c.Lines, l)
 		}
 	}
+	c.Notes = r.notes(s, f["notes"].value)
+	c.Groups = r.groups(s, f["groups"].value, &c)
 	return c
 }
 

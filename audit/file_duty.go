@@ -12,10 +12,12 @@ import (
 	"barlitre/machines/units"
 )
 
+const noDuty = "there is no duty; say what the axes must do over time"
+
 func (r *reader) duties(n, root *yaml.Node) {
 	items := r.items(scope{}, n, "duties", "duties: [{name: day shift, ...}]")
 	if len(items) == 0 && r.isAbsent(n) {
-		r.bad(scope{}, root, "duties", "there is no duty; say what the axes must do over time")
+		r.bad(scope{}, root, "duties", noDuty)
 	}
 	line := map[string]int{}
 	for i, item := range items {

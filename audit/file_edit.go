@@ -3,6 +3,7 @@ package audit
 import (
 	"errors"
 	"fmt"
+	"regexp"
 	"slices"
 	"strconv"
 	"strings"
@@ -173,14 +174,21 @@ func (f *File) fits(p place, quantity string) error {
 // change applies splices if the edited text reads as well as the old one and has
 // what was asked for; else nothing is changed.
 func (f *File) change(what string, splices []splice, holds func(*File) bool) error {
-	g, found := parse(apply(f.data, splices), f.open, f.Path, f.tables)
+	return f.take(what, apply(f.data, splices), holds)
+}
+
+// take is change for a text that is edited already.
+func (f *File) take(what string, data []byte, holds func(*File) bool) error {
+	g, found := parse(data, f.open, f.Path, f.tables)
 	if g == nil {
 		return fmt.Errorf("%s: %w", what, errLayout)
 	}
 	var errs []error
 	for _, n := range found {
-		same := func(o circuit.Finding) bool { return o.Text == n.Text && o.Circuit == n.Circuit }
-		if !slices.ContainsFunc(f.found, same) && !slices.ContainsFunc(errs, func(e error) bool { return e.Error() == n.Text }) {
+		same := func(o circuit.Finding) bool {
+			return withoutLines(o.Text) == withoutLines(n.Text) && o.Circuit == n.Circuit
+		}
+		if !isUndrawn(n) && !slices.ContainsFunc(f.found, same) && !slices.ContainsFunc(errs, func(e error) bool { return e.Error() == n.Text }) {
 			errs = append(errs, errors.New(n.Text))
 		}
 	}
@@ -193,6 +201,16 @@ func (f *File) change(what string, splices []splice, holds func(*File) bool) err
 	*f = *g
 	return nil
 }
+
+var lineNumbers = regexp.MustCompile(`in lines? \d+( and \d+)?`)
+
+// isUndrawn reports whether a finding says what a file has that is not drawn yet.
+func isUndrawn(n circuit.Finding) bool {
+	return strings.HasSuffix(n.Text, noDuty) || strings.HasSuffix(n.Text, noCircuit)
+}
+
+// withoutLines is a text whose line numbers, which an edit above them shifts, do not count.
+func withoutLines(text string) string { return lineNumbers.ReplaceAllString(text, "") }
 
 // Replace takes another text for the whole file, as undo does; recordings are not read again. When it cannot be
 // read as an audit file nothing is changed; the findings say why.
@@ -211,34 +229,36 @@ func (f *File) SetAt(circuitName, block string, at [2]float64) error {
 	if m == nil {
 		return fmt.Errorf("%s: there is no block %q in circuit %q", label, block, circuitName)
 	}
-	src := newSource(f.data)
-	x, y := strconv.FormatFloat(at[0], 'f', -1, 64), strconv.FormatFloat(at[1], 'f', -1, 64)
-	var splices []splice
-	list := child(m, "at")
-	if list == nil {
-		sp, err := src.insert(m, "at", "["+x+", "+y+"]")
-		if err != nil {
-			return fmt.Errorf("%s: %w", label, err)
-		}
-		splices = append(splices, sp)
-	} else {
-		if list.Kind != yaml.SequenceNode || len(list.Content) != 2 {
-			return fmt.Errorf("%s: %w", label, errLayout)
-		}
-		for i, text := range []string{x, y} {
-			if list.Content[i].Kind != yaml.ScalarNode || emptyValue(list.Content[i]) {
-				return fmt.Errorf("%s: %w", label, errLayout)
-			}
-			sp, err := src.replace(list.Content[i], list.Column-1, text)
-			if err != nil {
-				return fmt.Errorf("%s: %w", label, err)
-			}
-			splices = append(splices, sp)
-		}
+	splices, err := newSource(f.data).putPlace(m, at)
+	if err != nil {
+		return fmt.Errorf("%s: %w", label, err)
 	}
 	return f.change(label, splices, func(g *File) bool {
-		e := g.Circuit(circuitName)
-		b := e.Block(block)
+		b := g.Circuit(circuitName).Block(block)
 		return b != nil && b.At != nil && *b.At == at
 	})
+}
+
+// putPlace sets the key at of a mapping.
+func (s *source) putPlace(m *yaml.Node, at [2]float64) ([]splice, error) {
+	list := child(m, "at")
+	if list == nil {
+		sp, err := s.insert(m, "at", placeText(at))
+		return []splice{sp}, err
+	}
+	if list.Kind != yaml.SequenceNode || len(list.Content) != 2 {
+		return nil, errLayout
+	}
+	var out []splice
+	for i, n := range list.Content {
+		if n.Kind != yaml.ScalarNode || emptyValue(n) {
+			return nil, errLayout
+		}
+		sp, err := s.replace(n, list.Column-1, strconv.FormatFloat(at[i], 'f', -1, 64))
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, sp)
+	}
+	return out, nil
 }

@@ -56,7 +56,7 @@ func (s *source) lineBreak() string {
 
 // start returns where a node begins.
 func (s *source) start(n *yaml.Node) (int, error) {
-	if n.Line < 1 || n.Line > len(s.starts) {
+	if n == nil || n.Line < 1 || n.Line > len(s.starts) {
 		return 0, errLayout
 	}
 	i := s.starts[n.Line-1]
@@ -208,11 +208,7 @@ func (s *source) blockEnd(line, indent int) int {
 
 // lineEnd returns where a line ends, without its break.
 func (s *source) lineEnd(line int) int {
-	i := s.starts[line-1]
-	for i < len(s.data) && breakLen(s.data, i) == 0 {
-		i++
-	}
-	return i
+	return s.restOfLine(s.starts[line-1])
 }
 
 // plainEnd follows a plain text through the file: line breaks and the spaces
@@ -234,4 +230,26 @@ func (s *source) plainEnd(value string, i int) (int, error) {
 		}
 	}
 	return i, nil
+}
+
+// restOfLine returns the end of the line that i stands in.
+func (s *source) restOfLine(i int) int {
+	for i < len(s.data) && breakLen(s.data, i) == 0 {
+		i++
+	}
+	return i
+}
+
+// dash returns the column, from 0, of the dash before an entry of a list.
+func (s *source) dash(item *yaml.Node) (int, error) {
+	at, err := s.start(item)
+	if err != nil {
+		return 0, err
+	}
+	from := s.starts[item.Line-1]
+	before := strings.TrimRight(string(s.data[from:at]), " ")
+	if !strings.HasSuffix(before, "-") || strings.Trim(before[:len(before)-1], " ") != "" {
+		return 0, errLayout // the dash stands alone, or two lists begin in one line
+	}
+	return len(before) - 1, nil
 }

@@ -34,7 +34,7 @@ func apply(data []byte, splices []splice) []byte {
 // Where the value has a mapping of its own (a quantity with its origin), its
 // "value" is set. written is the value as encode writes it.
 func (s *source) put(m *yaml.Node, key, written string) (splice, error) {
-	if m.Kind != yaml.MappingNode {
+	if m == nil || m.Kind != yaml.MappingNode {
 		return splice{}, errLayout
 	}
 	k, v := pair(m, key)
@@ -91,13 +91,21 @@ func (s *source) replace(n *yaml.Node, indent int, written string) (splice, erro
 // of its own at the indentation of the other entries.
 func (s *source) insert(m *yaml.Node, key, written string) (splice, error) {
 	text := key + ": " + written
+	if strings.HasPrefix(written, s.lineBreak()) {
+		text = key + ":" + written
+	}
+	return s.attach(m, text)
+}
+
+// attach adds entries, written out, at the end of a mapping or list.
+func (s *source) attach(m *yaml.Node, texts ...string) (splice, error) {
 	start, err := s.start(m)
 	if err != nil {
 		return splice{}, err
 	}
 	flow := m.Style&yaml.FlowStyle != 0
 	if flow && len(m.Content) == 0 {
-		return splice{start + 1, start + 1, text}, nil
+		return splice{start + 1, start + 1, strings.Join(texts, ", ")}, nil
 	}
 	if len(m.Content) == 0 {
 		return splice{}, errLayout
@@ -107,12 +115,18 @@ func (s *source) insert(m *yaml.Node, key, written string) (splice, error) {
 		return splice{}, err
 	}
 	if flow {
-		return splice{end, end, ", " + text}, nil
+		return splice{end, end, ", " + strings.Join(texts, ", ")}, nil
 	}
-	for end < len(s.data) && breakLen(s.data, end) == 0 { // past a comment in the same line
-		end++
+	indent, mark := m.Column-1, ""
+	if m.Kind == yaml.SequenceNode {
+		mark = "- "
+		if indent, err = s.dash(m.Content[0]); err != nil {
+			return splice{}, err
+		}
 	}
-	return splice{end, end, s.lineBreak() + strings.Repeat(" ", m.Column-1) + text}, nil
+	begin := s.lineBreak() + strings.Repeat(" ", indent) + mark
+	end = s.restOfLine(end) // past a comment in the same line
+	return splice{end, end, begin + strings.Join(texts, begin)}, nil
 }
 
 var simpleText = regexp.MustCompile(`^-?[\pL\pN.+][\pL\pN .+/()°²³·%'*^_-]*$`)

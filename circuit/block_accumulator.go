@@ -9,6 +9,7 @@ import (
 // accumulatorKind is a gas-loaded accumulator.
 var accumulatorKind = &Kind{
 	Name: kindAccumulator, Title: "Accumulator, gas-loaded", Group: "supply",
+	Letter: "AC", Typical: []Setting{{"volume", "10 L"}, {"precharge", "90 bar"}},
 	Text: "Stores oil against gas. The pre-charge is stated at 20 °C gauge, as it is filled, and corrected to the gas temperature. Energy in the gas is booked as stored. The gas follows an exponent, or with a `thermal_time_constant` warms up as it is compressed and gives that heat to its wall in time; the heat that the wall keeps is then a loss. Ideal gas: above some 200 bar nitrogen is stiffer.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "oil"},

@@ -14,6 +14,7 @@ func openingParams() []Param {
 // checkKind is a check valve.
 var checkKind = &Kind{
 	Name: kindCheck, Title: "Check valve", Group: "valves",
+	Letter:    "CK",
 	Text:      "Passes oil from `in` to `out` only.",
 	Ports:     []Port{{Name: "in", Type: Oil, Text: "inlet"}, {Name: "out", Type: Oil, Text: "outlet"}},
 	Params:    openingParams(),

@@ -7,7 +7,8 @@ import (
 // compensatorKind is a pressure compensator before a metering edge.
 var compensatorKind = &Kind{
 	Name: kindCompensator, Title: "Pressure compensator", Group: "valves",
-	Text: "Stands before a metering edge and keeps the drop from A to the load signal at LS at its setting, by throttling what the supply has too much. It does not pass oil back.",
+	Letter: "IC",
+	Text:   "Stands before a metering edge and keeps the drop from A to the load signal at LS at its setting, by throttling what the supply has too much. It does not pass oil back.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "supply"},
 		{Name: "A", Type: Oil, Text: "to the metering edge"},

@@ -5,6 +5,7 @@ import "barlitre/machines/units"
 // coolerKind is the oil side of a cooler.
 var coolerKind = &Kind{
 	Name: kindCooler, Title: "Cooler", Group: "lines and conditioning",
+	Letter: "CL", Typical: []Setting{{"nominal_flow", "60 L/min"}},
 	Text: "Resistance of a cooler to the oil that passes it, with a bypass check valve where one is given.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "hot side; the bypass passes oil from here"},

@@ -7,6 +7,7 @@ import (
 // counterbalanceKind is a counterbalance (over-centre) valve.
 var counterbalanceKind = &Kind{
 	Name: kindCounterbalance, Title: "Counterbalance valve", Group: "valves",
+	Letter: "CB", Typical: []Setting{{"setting", "200 bar"}},
 	Text: "Holds a load at C and lets oil out to V only as the pressures at C and X lift it. Oil from V to C passes freely.",
 	Ports: []Port{
 		{Name: "V", Type: Oil, Text: "valve side"},

@@ -5,6 +5,7 @@ import "barlitre/machines/units"
 // cylinderKind is a differential cylinder.
 var cylinderKind = &Kind{
 	Name: kindCylinder, Title: "Cylinder, differential", Group: "actuators",
+	Letter: "C", Typical: []Setting{{"bore", "80 mm"}, {"rod", "56 mm"}},
 	Text: "Single-rod cylinder. Port A is the bore side and extends, port B the rod side. `hold` says how the axis stands still: by closed valves, by the pump, or by a brake.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "bore side; oil in extends"},

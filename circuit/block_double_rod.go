@@ -5,6 +5,7 @@ import "barlitre/machines/units"
 // doubleRodKind is a cylinder with rods on both sides.
 var doubleRodKind = &Kind{
 	Name: kindDoubleRod, Title: "Cylinder, double-rod", Group: "actuators",
+	Letter: "C", Typical: []Setting{{"bore", "80 mm"}, {"rod", "45 mm"}},
 	Text: "Cylinder with a rod on each side, of equal or of two diameters. Oil into A extends the rod that drives the load, the one on side B; with equal rods it takes the same flow both ways.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "side of the back rod; oil in extends"},

@@ -9,6 +9,7 @@ import (
 // filterKind is a filter with a linear and a square part and a bypass valve.
 var filterKind = &Kind{
 	Name: kindFilter, Title: "Filter", Group: "lines and conditioning",
+	Letter: "F", Typical: []Setting{{"nominal_flow", "100 L/min"}},
 	Text: "Return or pressure filter, with a bypass where one is given.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "dirty side"},

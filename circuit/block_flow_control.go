@@ -9,6 +9,7 @@ import (
 // flowControlKind is a two-way flow control valve with pressure compensation.
 var flowControlKind = &Kind{
 	Name: kindFlowControl, Title: "Flow control valve, two-way", Group: "valves",
+	Letter: "FC", Typical: []Setting{{"set_flow", "20 L/min"}},
 	Text: "Lets no more than the set flow from A to B, whatever the load, as long as the drop is above the least one; below it the flow falls as that of an orifice. From B to A it is an orifice, or free through a built-in check valve.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "inlet"},

@@ -9,6 +9,7 @@ import (
 // flowControl3Kind is a three-way flow control valve: priority flow to A, the rest to T.
 var flowControl3Kind = &Kind{
 	Name: kindFlowControl3, Title: "Flow control valve, three-way", Group: "valves",
+	Letter: "FC", Typical: []Setting{{"set_flow", "20 L/min"}},
 	Text: "Gives the set flow to A before all else and by-passes the rest to T, so that the inlet stands at the load pressure plus the drop. When T stands under a higher pressure the inlet rises with it and the flow to A is held all the same.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "supply"},

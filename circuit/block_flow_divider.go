@@ -7,6 +7,7 @@ const gearSection = "external gear, 93 % volumetric and 90 % mechanical at 180 b
 // flowDividerKind is a gear-type flow divider.
 var flowDividerKind = &Kind{
 	Name: kindFlowDivider, Title: "Flow divider, gear type", Group: "valves",
+	Letter: "FD", Typical: []Setting{{"displacement", "32 cm3/rev"}},
 	Text: "Two gear sections on one shaft: oil into P leaves by A and B in the ratio of the sections, whatever the pressures there. The section with the lower pressure drives the other, so that one side can be above P. It joins flows as it divides them.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "common side"},

@@ -5,7 +5,8 @@ import "barlitre/machines/units"
 // flowPointKind is a measuring point for a flow.
 var flowPointKind = &Kind{
 	Name: kindFlowPoint, Title: "Flow measuring point", Group: "measuring",
-	Text: "Flow meter in a line: the flow from A to B and the pressures before and after it. Without a nominal drop it is lossless. What was measured there may stand in the duty as a track Q1.flow: it changes nothing and is compared with what is computed.",
+	Letter: "Q",
+	Text:   "Flow meter in a line: the flow from A to B and the pressures before and after it. Without a nominal drop it is lossless. What was measured there may stand in the duty as a track Q1.flow: it changes nothing and is compared with what is computed.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "one side; the flow into it is the reading"},
 		{Name: "B", Type: Oil, Text: "other side"},

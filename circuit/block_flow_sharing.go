@@ -7,7 +7,8 @@ import (
 // flowSharingKind is a pressure compensator behind a metering edge.
 var flowSharingKind = &Kind{
 	Name: kindFlowSharing, Title: "Pressure compensator, flow sharing", Group: "valves",
-	Text: "Stands behind a metering edge and keeps the pressure there at the signal at LS, the highest load pressure of all sections, plus its setting. All metering edges then see the same drop, so that all sections slow down in proportion when the pump is exhausted. Give each LS from the load side (A), not from the port of the valve before it.",
+	Letter: "FS",
+	Text:   "Stands behind a metering edge and keeps the pressure there at the signal at LS, the highest load pressure of all sections, plus its setting. All metering edges then see the same drop, so that all sections slow down in proportion when the pump is exhausted. Give each LS from the load side (A), not from the port of the valve before it.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "behind the metering edge"},
 		{Name: "A", Type: Oil, Text: "to the actuator"},

@@ -9,6 +9,7 @@ import (
 // flushingKind is the flushing valve of a closed circuit.
 var flushingKind = &Kind{
 	Name: kindFlushing, Title: "Flushing valve", Group: "valves",
+	Letter: "FV", Typical: []Setting{{"opens", "16 bar"}, {"nominal_flow", "10 L/min"}},
 	Text: "Takes oil out of the low-pressure side of a closed circuit, past a relief valve and an orifice, so that it can be cooled and cleaned. The higher pressure shifts its spool; near equal pressures it is closed.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "one main line"},

@@ -9,6 +9,7 @@ import (
 // flywheelKind is a rotating mass on a shaft without a prime mover of given speed.
 var flywheelKind = &Kind{
 	Name: kindFlywheel, Title: "Flywheel", Group: "supply",
+	Letter: "FW", Typical: []Setting{{"inertia", "0.5 kg m2"}},
 	Text: "Rotating mass on a shaft whose speed is free. On a shaft that a motor holds at a given speed it does nothing but at changes of that speed, which the balance does not see.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "shaft"},

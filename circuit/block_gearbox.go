@@ -9,6 +9,7 @@ import (
 // gearboxKind is a gearbox between two shafts.
 var gearboxKind = &Kind{
 	Name: kindGearbox, Title: "Gearbox", Group: "supply",
+	Letter: "GB", Typical: []Setting{{"ratio", "3"}},
 	Text: "Joins two shafts that turn in a fixed ratio. Either side may drive; its loss is of the torque at the output and opposes motion both ways, so that driven from the output it passes the share 2 − 1/η.",
 	Ports: []Port{
 		{Name: "in", Type: Shaft, Text: "input shaft"},

@@ -13,6 +13,7 @@ const gravity = 9.80665 // m/s²
 // lineKind is a pipe or hose.
 var lineKind = &Kind{
 	Name: kindLine, Title: "Line", Group: "lines and conditioning",
+	Letter: "L", Typical: []Setting{{"length", "2 m"}, {"diameter", "20 mm"}},
 	Text: "Pipe or hose with laminar or turbulent friction, fittings and a difference in height.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "one end"},

@@ -9,6 +9,7 @@ import (
 // orificeKind is a fixed throttle.
 var orificeKind = &Kind{
 	Name: kindOrifice, Title: "Orifice", Group: "valves",
+	Letter: "O", Typical: []Setting{{"nominal_flow", "20 L/min"}},
 	Text: "Fixed turbulent restriction, given by a nominal point or by its diameter.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "one side"},

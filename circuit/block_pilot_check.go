@@ -7,7 +7,8 @@ import (
 // pilotCheckKind is a pilot-operated check valve.
 var pilotCheckKind = &Kind{
 	Name: kindPilotCheck, Title: "Pilot-operated check valve", Group: "valves",
-	Text: "Passes oil from V to C freely, and from C to V once the pilot pressure at X lifts it.",
+	Letter: "PC",
+	Text:   "Passes oil from V to C freely, and from C to V once the pilot pressure at X lifts it.",
 	Ports: []Port{
 		{Name: "V", Type: Oil, Text: "valve side"},
 		{Name: "C", Type: Oil, Text: "cylinder side, held"},

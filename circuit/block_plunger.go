@@ -5,6 +5,7 @@ import "barlitre/machines/units"
 // plungerKind is a single-acting plunger cylinder.
 var plungerKind = &Kind{
 	Name: kindPlunger, Title: "Cylinder, plunger", Group: "actuators",
+	Letter: "C", Typical: []Setting{{"diameter", "80 mm"}},
 	Text: "Single-acting cylinder: oil into A extends it, the load drives it back as far as the oil is let out. Without enough load it does not return.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "oil in extends"},

@@ -8,6 +8,7 @@ import (
 // low-pressure tank. What flows in or out is booked as stored energy.
 var pressureSourceKind = &Kind{
 	Name: kindPressureSource, Title: "Low-pressure source", Group: "supply",
+	Letter: "LP", Typical: []Setting{{"pressure", "5 bar"}},
 	Text:  "Reservoir at constant pressure, such as a pre-loaded tank of a pump-controlled cylinder. Oil exchanged with it is booked as stored energy.",
 	Ports: []Port{{Name: "P", Type: Oil, Text: "oil to and from the source"}},
 	Params: []Param{

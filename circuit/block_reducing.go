@@ -7,6 +7,7 @@ import (
 // reducingKind is a pressure reducing valve.
 var reducingKind = &Kind{
 	Name: kindReducing, Title: "Pressure reducing valve", Group: "valves",
+	Letter: "RD", Typical: []Setting{{"set", "60 bar"}},
 	Text: "Open at rest; throttles from P to A as soon as A reaches the setting, counted from the pressure at T. A relieving (three-way) valve lets oil from A to T when A is pushed above it. It passes oil from A to P only through a built-in check valve.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "supply"},

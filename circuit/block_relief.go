@@ -7,6 +7,7 @@ import (
 // reliefKind is a pressure relief valve.
 var reliefKind = &Kind{
 	Name: kindRelief, Title: "Relief valve", Group: "valves",
+	Letter: "RV", Typical: []Setting{{"crack", "160 bar"}},
 	Text: "Opens from P to T above its setting. Give either `set`, the pressure at the flow `set_flow` as name plates mean it, or `crack`, where it begins to open. With `vented` it is unloaded to that pressure while the circuit stands with pump_at_rest: unload.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "inlet"},

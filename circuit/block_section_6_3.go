@@ -7,6 +7,7 @@ import (
 // section63Kind is a section of an open-centre stack.
 var section63Kind = &Kind{
 	Name: kindSection63, Title: "Open-centre section 6/3", Group: "valves",
+	Letter: "S", Typical: []Setting{{"nominal_flow", "60 L/min"}},
 	Text: "Section of a stack of six-way valves. The through-channel C1 to C2 is open in the centre and closes in the measure in which the section opens; P feeds the section in parallel to the others. `follows`, `directs` and commands as a directional valve. Put a check valve before P where the section has a load check.",
 	Ports: []Port{
 		{Name: "C1", Type: Oil, Text: "through-channel, from the pump or the section before"},

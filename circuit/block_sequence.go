@@ -7,6 +7,7 @@ import (
 // sequenceKind is a sequence valve.
 var sequenceKind = &Kind{
 	Name: kindSequence, Title: "Sequence valve", Group: "valves",
+	Letter: "SQ", Typical: []Setting{{"set", "80 bar"}},
 	Text: "Opens P to A once the pressure at P, or with `pilot: external` that at X, exceeds its setting. The spring chamber drains apart, so pressure at A does not add to the setting; pressure at D does.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "inlet"},

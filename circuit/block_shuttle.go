@@ -5,7 +5,8 @@ import ()
 // shuttleKind selects the higher of two pilot signals.
 var shuttleKind = &Kind{
 	Name: kindShuttle, Title: "Shuttle valve (signal)", Group: "valves",
-	Text: "Passes the higher of the pilot pressures at X and Y to A.",
+	Letter: "SV",
+	Text:   "Passes the higher of the pilot pressures at X and Y to A.",
 	Ports: []Port{
 		{Name: "X", Type: Pilot, Text: "one signal"},
 		{Name: "Y", Type: Pilot, Text: "other signal"},

@@ -7,7 +7,8 @@ import (
 // shuttleFlowKind is a shuttle valve in an oil line.
 var shuttleFlowKind = &Kind{
 	Name: kindShuttleFlow, Title: "Shuttle valve", Group: "valves",
-	Text: "Joins A with the one of X and Y that stands under the higher pressure, either way; its ball closes the other. Used for instance to open a brake from both sides of a motor.",
+	Letter: "SF",
+	Text:   "Joins A with the one of X and Y that stands under the higher pressure, either way; its ball closes the other. Used for instance to open a brake from both sides of a motor.",
 	Ports: []Port{
 		{Name: "X", Type: Oil, Text: "one side"},
 		{Name: "Y", Type: Oil, Text: "other side"},

@@ -7,6 +7,7 @@ import (
 // throttleCheckKind is a throttle with a check valve beside it.
 var throttleCheckKind = &Kind{
 	Name: kindThrottleCheck, Title: "Throttle-check valve", Group: "valves",
+	Letter: "TC", Typical: []Setting{{"nominal_flow", "20 L/min"}},
 	Text: "Throttles from A to B; from B to A a check valve beside the throttle passes oil freely.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "inlet of the throttled way"},

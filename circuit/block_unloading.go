@@ -5,6 +5,7 @@ import "barlitre/machines/units"
 // unloadingKind is the unloading (charging) valve of an accumulator circuit.
 var unloadingKind = &Kind{
 	Name: kindUnloading, Title: "Unloading valve", Group: "valves",
+	Letter: "UV", Typical: []Setting{{"unloads", "180 bar"}, {"loads", "150 bar"}},
 	Text: "Sends the pump to A, through its check valve, until A reaches the upper switching pressure; then unloads the pump to T until A has fallen to the lower one. It snaps between the two.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "pump"},

@@ -5,6 +5,7 @@ import "barlitre/machines/units"
 // unloadingPilotKind is the unloading valve of a high-low pump pair.
 var unloadingPilotKind = &Kind{
 	Name: kindUnloadingPilot, Title: "Unloading valve, remote pilot", Group: "valves",
+	Letter: "UP", Typical: []Setting{{"setting", "80 bar"}},
 	Text: "Opens P to T as the pressure at its pilot X rises above its setting, without snap: it unloads the large pump of a high-low pair, behind whose check valve X is taken. The unloading (charging) valve of an accumulator is another kind.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "pump"},

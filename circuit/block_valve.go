@@ -10,6 +10,7 @@ import (
 // valveKind is a 4/3 directional or proportional valve.
 var valveKind = &Kind{
 	Name: kindValve, Title: "Directional valve 4/3", Group: "valves",
+	Letter: "V", Typical: []Setting{{"nominal_flow", "60 L/min"}},
 	Text: "Four edges, any centre. With `follows` it throttles so that the axis moves as the duty says (the same opening on both edges, or with `meter_out: separate` one of its own on the edge to tank); with `directs` it only chooses the direction, fully open; otherwise a track of the duty commands it.",
 	Ports: []Port{
 		{Name: "P", Type: Oil, Text: "supply"},

@@ -121,6 +121,9 @@ type LossKind struct {
 // Equation is one law of a block, with where it comes from.
 type Equation struct{ Text, Source string }
 
+// Setting is a value as a file writes it.
+type Setting struct{ Key, Text string }
+
 // Kind is an entry of the catalog: everything the program knows of one kind of block.
 type Kind struct {
 	Name      string // as in files
@@ -132,6 +135,10 @@ type Kind struct {
 	Losses    []LossKind
 	Equations []Equation
 	Rating    string // key of the parameter that limits its pressure, if any
+	// Letter begins the ids of such blocks, as in P1.
+	Letter string
+	// Typical is what a new block begins with where its kind has no default, to be replaced: common practice, no source.
+	Typical []Setting
 	// Symbol returns the name of its drawing symbol; see also SymbolOf.
 	Symbol func(b *Block) string
 	// derive gives what a block has for a number that is not given, where that follows from others.

@@ -38,20 +38,7 @@ func (k *checker) ports() {
 // joints checks what meets in each line.
 func (k *checker) joints() {
 	for _, n := range k.nets {
-		types := map[PortType][]string{}
-		sources, oil := []string{}, false
-		for _, p := range n.ports {
-			b := k.c.Block(p.Block)
-			if b.Kind == kindJunction {
-				continue
-			}
-			port := KindNamed(b.Kind).Port(p.Port)
-			types[port.Type] = append(types[port.Type], p.String())
-			oil = oil || port.Type == Oil
-			if port.Source {
-				sources = append(sources, p.String())
-			}
-		}
+		m := k.c.meets(n.ports)
 		line := 0
 		if len(n.lines) > 0 {
 			line = n.lines[0]
@@ -60,43 +47,16 @@ func (k *checker) joints() {
 			k.found = append(k.found, Finding{Level: Stops, Circuit: k.c.Name, Block: block, Text: text, Line: line})
 		}
 		at := n.ports[0].Block
-		var kinds []string
-		for t, ports := range types {
-			if t != Pilot || len(types) == 1 {
-				kinds = append(kinds, string(t)+" ("+ports[0]+")")
-			}
-		}
-		sort.Strings(kinds)
-		switch {
-		case len(kinds) > 1 || (len(types[Pilot]) > 0 && !oil && len(types) > 1):
-			bad(at, "a line joins different things: "+join(kinds, "and")+"; they cannot be connected")
-		case oil && len(sources) > 0:
-			bad(at, "signal outlet "+sources[0]+" stands on an oil line; lead it to pilot ports only")
-		case len(types[Pilot]) > 0 && !oil && len(sources) == 0:
+		if text := m.clash(); text != "" {
+			bad(at, text)
+		} else if m.needsSignal() {
 			bad(at, "nothing gives a pressure to the pilot line at "+n.name()+"; lead it to an oil line, to LS of a valve or to A of a shuttle valve")
-		case len(sources) > 1:
-			bad(at, "two signals meet at "+join(sources, "and")+"; put a shuttle valve between them")
 		}
-		k.fixedPressures(n, bad)
+		if text := m.heldTwice(); text != "" {
+			bad(n.src, text)
+		}
 	}
 	k.pressureControls()
-}
-
-// fixedPressures refuses two given pressures on one node.
-func (k *checker) fixedPressures(n *net, bad func(block, text string)) {
-	var fixed []string
-	seen := map[string]bool{}
-	for _, p := range n.ports {
-		if b := k.c.Block(p.Block); (b.Kind == kindTank || b.Kind == kindPressureSource) && !seen[b.ID] {
-			seen[b.ID] = true
-			if b.Kind == kindPressureSource || n.src != "" {
-				fixed = append(fixed, b.ID)
-			}
-		}
-	}
-	if len(fixed) > 1 {
-		bad(n.src, join(fixed, "and")+" hold one line at pressures of their own; separate them by a valve or remove one")
-	}
 }
 
 // pressureControls refuses two pumps that each want to hold the pressure of one line.

@@ -1,0 +1,62 @@
+package document
+
+import (
+	"fmt"
+
+	"barlitre/audit"
+)
+
+// AddDuty adds a duty that lasts as long as said, "10 s".
+func (d *Document) AddDuty(name, length string) error {
+	return d.Edit("Add duty "+name, func(f *audit.File) error { return f.AddDuty(name, length) })
+}
+
+// RenameDuty gives a duty another name.
+func (d *Document) RenameDuty(old, name string) error {
+	return d.Edit("Rename duty "+old, func(f *audit.File) error { return f.RenameDuty(old, name) })
+}
+
+// RemoveDuty takes a duty out.
+func (d *Document) RemoveDuty(name string) error {
+	return d.Edit("Remove duty "+name, func(f *audit.File) error { return f.RemoveDuty(name) })
+}
+
+// SetDuty sets hours, repeats, step, instants or note of a duty.
+func (d *Document) SetDuty(name, key, value string) error {
+	return d.Edit("Change "+key+" of "+name, func(f *audit.File) error { return f.SetDuty(name, key, value) })
+}
+
+// SetPhase names a stretch of a duty; "" for its beginning takes it out.
+func (d *Document) SetPhase(duty, phase, from string) error {
+	return d.Edit("Change phase "+phase, func(f *audit.File) error { return f.SetPhase(duty, phase, from) })
+}
+
+// SetStandstill sets the speed up to which an axis stands; "" takes it out.
+func (d *Document) SetStandstill(duty, axis, speed string) error {
+	return d.Edit("Change standstill of "+axis, func(f *audit.File) error { return f.SetStandstill(duty, axis, speed) })
+}
+
+// AddTrack adds a column of zeros to the table of a duty.
+func (d *Document) AddTrack(duty, track, unit string) error {
+	return d.Edit("Add "+track, func(f *audit.File) error { return f.AddTrack(duty, track, unit) })
+}
+
+// RemoveTrack takes a column out of the table of a duty.
+func (d *Document) RemoveTrack(duty, track string) error {
+	return d.Edit("Remove "+track, func(f *audit.File) error { return f.RemoveTrack(duty, track) })
+}
+
+// AddRow puts a row into the table of a duty, as audit.File.AddRow does.
+func (d *Document) AddRow(duty string, row int, values map[string]string) error {
+	return d.Edit(fmt.Sprintf("Add row %d of %s", row+1, duty), func(f *audit.File) error { return f.AddRow(duty, row, values) })
+}
+
+// RemoveRow takes a row out of the table of a duty.
+func (d *Document) RemoveRow(duty string, row int) error {
+	return d.Edit(fmt.Sprintf("Remove row %d of %s", row+1, duty), func(f *audit.File) error { return f.RemoveRow(duty, row) })
+}
+
+// SetTable writes the whole table of a duty, as audit.File.SetTable does.
+func (d *Document) SetTable(duty string, heads []string, columns [][]string) error {
+	return d.Edit("Change table of "+duty, func(f *audit.File) error { return f.SetTable(duty, heads, columns) })
+}

@@ -1,0 +1,389 @@
+package audit
+
+import (
+	"bytes"
+	"os"
+	"slices"
+	"strings"
+	"testing"
+
+	"barlitre/circuit"
+)
+
+// sheet is a file with comments everywhere that an edit may meet them.
+const sheet = `format: barlitre/1
+# top
+oil: {grade: ISO VG 46, temperature: 50 C}
+axes: {ram: linear}
+duties:
+- name: cycle # d
+  points:
+    t: [0 s, 1 s]
+    ram.speed: [0 m/s, 0.1 m/s]   # v
+    "V1.command []": [0, 1]
+circuits:
+- name: As found
+  pump_at_rest: keep
+  blocks: # all
+    # the supply
+    T1: {kind: tank, at: [1, 9]}
+    P1: {kind: pump, displacement: 45 cm3/rev, at: [1, 5]} # big one
+    # behind it
+    F1:
+      kind: filter   # 10 µm
+      nominal_flow: 60 L/min
+    CK1: {kind: check, mirror: no}
+
+    V1: {kind: valve, nominal_flow: 60 L/min, at: [4, 2], turn: 1}
+  lines: # one line = one node
+  - T1.T - P1.S # suction
+  # pressure
+  - P1.P - F1.A
+  - F1.B - CK1.in   # clean
+  - "CK1.out - V1.P"
+  - V1.T - T1.T
+  groups:
+  - {label: Supply, blocks: [P1, T1]} # g
+  - {label: Clean, blocks: [F1]}
+# end
+`
+
+func sheetFile(t *testing.T) *File {
+	t.Helper()
+	return mustParse(t, strings.Replace(sheet, `"V1.command []"`, "V1.command", 1))
+}
+
+func mustParse(t testing.TB, text string) *File {
+	t.Helper()
+	f, found := Parse([]byte(text), nil, "")
+	if f == nil || circuit.AnyStops(found) {
+		t.Fatalf("not readable: %v", found)
+	}
+	return f
+}
+
+// becomes fails unless the file is the sheet with pieces of text changed.
+func becomes(t *testing.T, f *File, err error, pairs ...string) {
+	t.Helper()
+	if err != nil {
+		t.Error(err)
+		return
+	}
+	want := strings.Replace(sheet, `"V1.command []"`, "V1.command", 1)
+	for i := 0; i < len(pairs); i += 2 {
+		if strings.Count(want, pairs[i]) != 1 {
+			t.Fatalf("%q stands %d times in the sheet", pairs[i], strings.Count(want, pairs[i]))
+		}
+		want = strings.Replace(want, pairs[i], pairs[i+1], 1)
+	}
+	if got := string(f.Bytes()); got != want {
+		t.Errorf("got\n%s\nwant\n%s", got, want)
+	}
+}
+
+func TestAddBlock(t *testing.T) {
+	f := sheetFile(t)
+	id, err := f.AddBlock("As found", "relief", [2]float64{3, 4.5}, "")
+	if id != "RV1" {
+		t.Errorf("id %q", id)
+	}
+	becomes(t, f, err, "turn: 1}\n", "turn: 1}\n    RV1: {kind: relief, crack: {value: 160 bar, origin: assumed, note: \"typical, put in your own\"}, at: [3, 4.5]}\n")
+	if v := f.Circuit("As found").Block("RV1").Values["crack"]; v.Origin != circuit.Assumed || v.SI != 160e5 {
+		t.Errorf("got %+v", v)
+	}
+	for _, c := range []struct{ kind, id, want string }{
+		{"relief", "", "RV2"}, {"pump", "", "P2"}, {"valve", "", "V2"}, {"cylinder", "C9", "C9"}, {"cylinder", "", "C1"},
+	} {
+		if id, err := f.AddBlock("As found", c.kind, [2]float64{}, c.id); err != nil || id != c.want {
+			t.Errorf("%s: %q, %v", c.kind, id, err)
+		}
+	}
+	e := f.Circuit("As found")
+	if a := e.Block("C9").Word("axis"); a != "ram" {
+		t.Errorf("the first cylinder has axis %q", a)
+	}
+	if a := e.Block("C1").Word("axis"); a != "" {
+		t.Errorf("the second cylinder takes axis %q, which is moved already", a)
+	}
+	if a := e.Block("V2").Word("follows"); a != "ram" {
+		t.Errorf("the valve follows %q", a)
+	}
+	for _, c := range [][3]string{
+		{"As found", "relif", `did you mean "relief"?`}, {"As", "relief", `there is no circuit "As"`}, {"As found", "relief", "has a block V1 already"},
+	} {
+		before := f.Bytes()
+		if _, err := f.AddBlock(c[0], c[1], [2]float64{}, "V1"); err == nil || !strings.Contains(err.Error(), c[2]) || !bytes.Equal(before, f.Bytes()) {
+			t.Errorf("%v: got %v", c, err)
+		}
+	}
+}
+
+// A new block of any kind is complete but for ports, and for what only the user knows.
+func TestEveryKindBeginsComplete(t *testing.T) {
+	for _, k := range circuit.Catalog() {
+		f := mustParse(t, "format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\naxes: {ram: linear, drum: rotary}\nduties: [{name: d, points: {t: [0 s, 1 s]}}]\ncircuits: [{name: x, pump_at_rest: keep}]\n")
+		id, err := f.AddBlock("x", k.Name, [2]float64{1, 2}, "")
+		if err != nil || !strings.HasPrefix(id, k.Letter) || k.Letter == "" {
+			t.Errorf("%s: %q, %v", k.Name, id, err)
+			continue
+		}
+		for _, n := range circuit.Check(f.Circuits[0].Circuit, f.Axes, nil) {
+			if n.Level == circuit.Stops && n.Parameter != "" && n.Parameter != "hold" {
+				t.Errorf("%s: %s", k.Name, n.Text)
+			}
+		}
+	}
+}
+
+func TestConnectWrites(t *testing.T) {
+	for name, c := range map[string]struct {
+		do    func(f *File) error
+		pairs []string
+	}{
+		"new line":           {func(f *File) error { return f.Connect("As found", "P1.D", "T1.T") }, []string{"  - V1.T - T1.T\n", "  - V1.T - T1.T\n  - P1.D - T1.T\n"}},
+		"on a line":          {func(f *File) error { return f.Connect("As found", "P1.LS", "V1.P") }, []string{`"CK1.out - V1.P"`, `"CK1.out - V1.P - P1.LS"`}},
+		"on a line, turned":  {func(f *File) error { return f.Connect("As found", "F1.A", "P1.LS") }, []string{"P1.P - F1.A", "P1.P - F1.A - P1.LS"}},
+		"on a line by place": {func(f *File) error { return f.ConnectLine("As found", "P1.LS", 3) }, []string{`"CK1.out - V1.P"`, `"CK1.out - V1.P - P1.LS"`}},
+		"two lines": {func(f *File) error { return f.Connect("As found", "V1.P", "P1.P") },
+			[]string{"P1.P - F1.A", "P1.P - F1.A - CK1.out - V1.P", "  - \"CK1.out - V1.P\"\n", ""}},
+		"two lines by place": {func(f *File) error { return f.JoinLines("As found", 2, 1) },
+			[]string{"P1.P - F1.A", "P1.P - F1.A - F1.B - CK1.in", "- F1.B - CK1.in   # clean", "# clean"}},
+		"junction": {func(f *File) error { _, err := f.AddJunction("As found", 1, [2]float64{7, 8}); return err },
+			[]string{"P1.P - F1.A", "P1.P - F1.A - J1.1", "turn: 1}\n", "turn: 1}\n    J1: {kind: junction, at: [7, 8]}\n"}},
+		"off a line":       {func(f *File) error { return f.Disconnect("As found", "P1.S") }, []string{"- T1.T - P1.S # suction", "# suction"}},
+		"a tank":           {func(f *File) error { return f.Disconnect("As found", "T1.T") }, []string{"- T1.T - P1.S # suction", "# suction", "  - V1.T - T1.T\n", ""}},
+		"a tank, one line": {func(f *File) error { return f.DisconnectFrom("As found", "T1.T", 4) }, []string{"  - V1.T - T1.T\n", ""}},
+		"a line":           {func(f *File) error { return f.DeleteLine("As found", 1) }, []string{"  - P1.P - F1.A\n", ""}},
+	} {
+		t.Run(name, func(t *testing.T) {
+			f := sheetFile(t)
+			becomes(t, f, c.do(f), c.pairs...)
+		})
+	}
+}
+
+func TestConnectRefuses(t *testing.T) {
+	f := sheetFile(t)
+	for _, kind := range []string{"electric_motor", "shuttle", "cylinder", "pressure_source", "shuttle"} {
+		if _, err := f.AddBlock("As found", kind, [2]float64{}, ""); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if err := f.Connect("As found", "SV1.A", "SV2.X"); err != nil {
+		t.Fatal(err)
+	}
+	for _, c := range [][3]string{
+		{"M1.shaft", "P1.P", "oil (F1.A) and shaft (M1.shaft)"},
+		{"M1.shaft", "SV1.X", "pilot (SV1.X) and shaft (M1.shaft)"},
+		{"M1.E", "P1.shaft", "electric (M1.E) and shaft (P1.shaft)"},
+		{"SV2.A", "P1.P", "signal outlet SV2.A stands on an oil line"},
+		{"SV1.A", "SV2.A", "two signals meet at SV1.A and SV2.A"},
+		{"LP1.P", "T1.T", "hold one line at pressures of their own"},
+		{"P1.P", "F1.A", "on one line already"},
+		{"P1.P", "P1.P", "to itself"},
+		{"P1.P", "P1.S", "of one block"},
+		{"C1.A", "C1.B", "of one block"},
+		{"P1.X", "T1.T", `no port "X"; it has shaft, S, P, D and LS`},
+		{"P7.P", "T1.T", "there is no block P7"},
+		{"P1", "T1.T", "write block.port"},
+	} {
+		before := f.Bytes()
+		if err := f.Connect("As found", c[0], c[1]); err == nil || !strings.Contains(err.Error(), c[2]) {
+			t.Errorf("%v: got %v", c, err)
+		}
+		if !bytes.Equal(before, f.Bytes()) {
+			t.Errorf("%v: refused, but the text changed", c)
+		}
+	}
+	if err := f.Connect("As found", "M1.shaft", "P1.shaft"); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := f.AddJunction("As found", len(f.Circuits[0].Lines)-1, [2]float64{}); err == nil || !strings.Contains(err.Error(), "line of type shaft") {
+		t.Errorf("a junction on a shaft: %v", err)
+	}
+	if err := f.Disconnect("As found", "C1.A"); err == nil {
+		t.Error("disconnected what stands on no line")
+	}
+}
+
+// Lines of the two sides of a junction are one node already.
+func TestConnectThroughJunction(t *testing.T) {
+	f := sheetFile(t)
+	if _, err := f.AddJunction("As found", 1, [2]float64{}); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Connect("As found", "J1.2", "P1.LS"); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Connect("As found", "P1.LS", "F1.A"); err == nil || !strings.Contains(err.Error(), "joined already, by a junction") {
+		t.Errorf("got %v", err)
+	}
+}
+
+func TestDelete(t *testing.T) {
+	f := sheetFile(t)
+	becomes(t, f, f.Delete("As found", false, "V1"), "    V1: {kind: valve, nominal_flow: 60 L/min, at: [4, 2], turn: 1}\n", "",
+		"  - \"CK1.out - V1.P\"\n  - V1.T - T1.T\n", "", "    V1.command: [0, 1]\n", "")
+	f = sheetFile(t)
+	becomes(t, f, f.Delete("As found", false, "P1"), "    P1: {kind: pump, displacement: 45 cm3/rev, at: [1, 5]} # big one\n", "",
+		"- T1.T - P1.S # suction", "# suction", "  - P1.P - F1.A\n", "", "[P1, T1]", "[T1]")
+	f = sheetFile(t)
+	becomes(t, f, f.Delete("As found", true, "CK1", "F1"), "    F1:\n      kind: filter   # 10 µm\n      nominal_flow: 60 L/min\n    CK1: {kind: check, mirror: no}\n", "",
+		"- P1.P - F1.A", "- P1.P - V1.P", "- F1.B - CK1.in   # clean\n  - \"CK1.out - V1.P\"", "# clean", "  - {label: Clean, blocks: [F1]}\n", "")
+	f = sheetFile(t)
+	if err := f.Delete("As found", false, "T1", "P1", "F1", "CK1", "V1"); err != nil {
+		t.Error(err)
+	}
+	for _, want := range []string{"blocks: {} # all\n    # the supply\n    # behind it\n\n  lines: [] # one line = one node\n  # suction\n  # pressure\n  # clean\n  groups: []\n  # g\n"} {
+		if !strings.Contains(string(f.Bytes()), want) {
+			t.Errorf("an empty sheet is\n%s", f.Bytes())
+		}
+	}
+	if _, err := f.AddBlock("As found", "tank", [2]float64{1, 2}, ""); err != nil || !strings.Contains(string(f.Bytes()), "blocks: # all\n    T1: {kind: tank, at: [1, 2]}\n    # the supply") {
+		t.Errorf("%v\n%s", err, f.Bytes())
+	}
+	f = sheetFile(t)
+	if err := f.Delete("As found", false, "P1", "X9"); err == nil || !strings.Contains(err.Error(), `no block "X9"`) {
+		t.Errorf("got %v", err)
+	}
+}
+
+func TestRename(t *testing.T) {
+	f := sheetFile(t)
+	becomes(t, f, f.Rename("As found", "V1", "V7"), "    V1: {", "    V7: {", "CK1.out - V1.P", "CK1.out - V7.P", "V1.T - T1.T", "V7.T - T1.T", "V1.command", "V7.command")
+	f = sheetFile(t)
+	becomes(t, f, f.Rename("As found", "P1", "MP"), "    P1: {", "    MP: {", "T1.T - P1.S", "T1.T - MP.S", "P1.P - F1.A", "MP.P - F1.A", "[P1, T1]", "[MP, T1]")
+	for id, want := range map[string]string{"V1": "has a block V1 already", "P 2": "letters, digits and _", "ram": "name of an axis"} {
+		if err := f.Rename("As found", "MP", id); err == nil || !strings.Contains(err.Error(), want) {
+			t.Errorf("%s: got %v", id, err)
+		}
+	}
+}
+
+func TestTurnAndMirror(t *testing.T) {
+	f := sheetFile(t)
+	becomes(t, f, f.Rotate("As found", 1, "V1"), "turn: 1}", "turn: 2}")
+	f = sheetFile(t)
+	becomes(t, f, f.Mirror("As found", "V1"), "turn: 1}", "turn: 3, mirror: yes}")
+	f = sheetFile(t)
+	becomes(t, f, f.Rotate("As found", -1, "F1"), "60 L/min\n    CK1", "60 L/min\n      turn: 3\n    CK1")
+	f = sheetFile(t)
+	becomes(t, f, f.Rotate("As found", 1, "T1", "P1"), "at: [1, 9]", "at: [1, 9], turn: 1", "at: [1, 5]", "at: [5, 9], turn: 1")
+	f = sheetFile(t)
+	becomes(t, f, f.MoveBy("As found", [2]float64{2, -1}, "T1", "V1"), "at: [1, 9]", "at: [3, 8]", "at: [4, 2]", "at: [6, 1]")
+	for i := 0; i < 4; i++ {
+		if err := f.Rotate("As found", 1, "T1", "P1", "V1"); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if b := f.Circuit("As found").Block("V1"); *b.At != [2]float64{6, 1} || b.Turn != 1 {
+		t.Errorf("four quarter turns leave V1 at %v, turn %d", *b.At, b.Turn)
+	}
+}
+
+// What is copied from one file can be pasted into any other, flow style too.
+func TestCopyPaste(t *testing.T) {
+	f := full(t)
+	e := f.Circuit("As found")
+	var ids []string
+	for _, b := range e.Blocks {
+		ids = append(ids, b.ID)
+	}
+	text, err := f.Copy("As found", ids...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for name, target := range map[string]string{
+		"block style": "format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\nduties:\n- {name: d, points: {t: [0 s, 1 s]}}\naxes: {ram: linear, drum: rotary}\ncircuits:\n- name: new\n",
+		"flow style":  "{format: barlitre/1, oil: {grade: ISO VG 46, temperature: 50 C}, axes: {ram: linear, drum: rotary}, duties: [{name: d, points: {t: [0 s, 1 s]}}], circuits: [{name: new}]}",
+	} {
+		g := mustParse(t, target)
+		got, err := g.Paste("new", text, [2]float64{10, 0})
+		if err != nil {
+			t.Fatalf("%s: %v", name, err)
+		}
+		c := g.Circuit("new")
+		if len(c.Blocks) != len(ids) || len(c.Lines) != len(e.Lines) {
+			t.Errorf("%s: %d blocks, %d lines", name, len(c.Blocks), len(c.Lines))
+		}
+		for _, b := range e.Blocks {
+			p := c.Block(got[b.ID])
+			if p == nil || p.Kind != b.Kind || len(p.Values) != len(b.Values) || p.Word("axis") != b.Word("axis") {
+				t.Errorf("%s: %s is pasted as %+v", name, b.ID, p)
+				continue
+			}
+			for key, v := range b.Values {
+				w := p.Values[key]
+				if w.SI != v.SI || w.Origin != v.Origin || w.Note != v.Note {
+					t.Errorf("%s: %s.%s: %v became %v", name, b.ID, key, v, w)
+				}
+			}
+			if b.At != nil && (p.At == nil || p.At[0] != b.At[0]+10) {
+				t.Errorf("%s: %s lies at %v", name, b.ID, p.At)
+			}
+		}
+		again, err := g.Paste("new", text, [2]float64{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, b := range e.Blocks {
+			if p := g.Circuit("new").Block(again[b.ID]); p.Word("axis")+p.Word("follows") != "" {
+				t.Errorf("%s: %s takes an axis that is taken", name, p.ID)
+			}
+		}
+	}
+	for _, bad := range []string{"", "hello", "a: [", "format: barlitre/1\n"} {
+		if _, err := f.Paste("As found", bad, [2]float64{}); err == nil || !strings.Contains(err.Error(), "holds no blocks") {
+			t.Errorf("%q: got %v", bad, err)
+		}
+	}
+	s := sheetFile(t)
+	got, err := s.Duplicate("As found", [2]float64{1, 1}, "F1", "CK1", "V1")
+	if err != nil || got["F1"] != "F2" || got["V1"] != "V2" {
+		t.Fatalf("%v, %v", got, err)
+	}
+	c := s.Circuit("As found")
+	if !slices.ContainsFunc(c.Lines, func(l circuit.Line) bool { return portsText(l.Ports) == "F2.B - CK2.in" }) || len(c.Groups) != 3 {
+		t.Errorf("the copy has no lines or group of its own:\n%s", s.Bytes())
+	}
+}
+
+// All files of the tests and samples are followed: a block can be added, connected and
+// deleted again, and the text is then as before.
+func TestDrawInAllFiles(t *testing.T) {
+	var names []string
+	for _, dir := range []string{"testdata/", "testdata/trials/", "testdata/published/", "../samples/", "../samples/starters/"} {
+		list, err := os.ReadDir(dir)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, n := range list {
+			if strings.HasSuffix(n.Name(), ".yaml") {
+				names = append(names, dir+n.Name())
+			}
+		}
+	}
+	for _, name := range names {
+		f, _ := Read(name)
+		if f == nil {
+			t.Fatal(name)
+		}
+		before := f.Bytes()
+		for _, e := range f.Circuits {
+			port := e.Lines[0].Ports[0].String()
+			id, err := f.AddBlock(e.Name, "junction", [2]float64{1, 2}, "")
+			if e.TypeOf(e.Lines[0].Ports[0]) == circuit.Oil && err == nil {
+				err = f.Connect(e.Name, id+".1", port)
+			}
+			if err == nil {
+				err = f.Delete(e.Name, false, id)
+			}
+			if err != nil {
+				t.Errorf("%s, %s: %v", name, e.Name, err)
+			}
+		}
+		if len(names) < 20 || !bytes.Equal(before, f.Bytes()) && strings.Count(string(before), "  -  ") == 0 {
+			t.Errorf("%s is not as before", name)
+		}
+	}
+}
