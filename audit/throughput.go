@@ -22,7 +22,7 @@ var throughputKinds = map[string]struct {
 	signal string
 	sign   float64
 }{
-	"pump": {"shaft", 1}, "charge_pump": {"shaft", 1}, "motor": {"shaft", 1},
+	"pump": {"shaft", 1}, "charge_pump": {"shaft", 1}, "motor": {"shaft", 1}, "switched_machine": {"shaft", 1},
 	"electric_motor": {"shaft", -1}, "engine": {"shaft", -1}, "converter": {"electric", 1},
 }
 
