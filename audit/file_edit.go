@@ -70,6 +70,15 @@ func (f *File) Set(target, quantity string) error {
 			return fmt.Errorf("%s: %w", p.label, err)
 		}
 		splices = append(splices, band...)
+		if v := child(p.mapping, p.key); p.attribute == "" && v != nil {
+			if n := child(v, "note"); n != nil && n.Value == typicalNote { // it was put in
+				gone, err := src.cutOne(v, "note")
+				if err != nil {
+					return fmt.Errorf("%s: %w", p.label, err)
+				}
+				splices = append(splices, gone...)
+			}
+		}
 	}
 	return f.change(target, splices, func(g *File) bool { return g.holds(target, quantity) })
 }
