@@ -30,7 +30,7 @@ func (f *File) AddDuty(name, length string) error {
 	if err != nil {
 		return fmt.Errorf("duty %q: %w", name, err)
 	}
-	return f.take(name, d.src.data, func(g *File) bool { return g.dutyIndex(name) == n })
+	return f.take(name, d, func(g *File) bool { return g.dutyIndex(name) == n })
 }
 
 // RenameDuty gives a duty another name.
@@ -133,7 +133,7 @@ func (f *File) dutyEdit(d *draft, i int, err error, holds func(*File) bool) erro
 	if err != nil {
 		return fmt.Errorf("%s: %w", what, err)
 	}
-	return f.take(what, d.src.data, holds)
+	return f.take(what, d, holds)
 }
 
 func (f *File) dutyNode(i int) *yaml.Node { return item(child(f.root, "duties"), i) }

@@ -122,14 +122,14 @@ func (p *player) edit() (what string, err error) {
 	case len(f.Circuits) > 4 || k < 13:
 		p.deleted = append(p.deleted, circuitText(string(f.Bytes()), name))
 		return "delete circuit", p.d.DeleteCircuit(name)
-	case k < 28:
+	case k < 26:
 		_, err := p.d.AddBlock(name, kind, p.place())
 		return "add " + kind, err
-	case k < 50:
+	case k < 46:
 		a, b := p.port(&e), p.port(&e)
 		return "connect " + a + " " + b, p.d.Connect(name, a, b)
-	case k < 53:
-		return "connect line", p.d.ConnectLine(name, p.port(&e), line)
+	case k < 49:
+		return "line", p.d.ConnectLine(name, p.port(&e), line)
 	case k < 55:
 		return "join", p.d.JoinLines(name, line, p.r.IntN(len(e.Lines)+1))
 	case k < 57:
