@@ -20,7 +20,7 @@ func (f *File) AddAxis(name string, kind duty.AxisKind) error {
 	if err := d.addInline(d.root, "axes", false, encode(name, true)+": "+kind.String()); err != nil {
 		return fmt.Errorf("axis %s: %w", name, err)
 	}
-	return f.take("axis "+name, d.src.data, func(g *File) bool { return slices.Contains(g.Axes, duty.Axis{Name: name, Kind: kind}) })
+	return f.take("axis "+name, d, func(g *File) bool { return slices.Contains(g.Axes, duty.Axis{Name: name, Kind: kind}) })
 }
 
 func (f *File) mayBeAxis(name string) error {
@@ -83,7 +83,7 @@ func (f *File) RenameAxis(old, name string) error {
 	if err := f.renameTracks(d, old, name, false); err != nil {
 		return err
 	}
-	return f.take("axis "+old, d.src.data, func(g *File) bool { return g.isAxis(name) && !g.isAxis(old) })
+	return f.take("axis "+old, d, func(g *File) bool { return g.isAxis(name) && !g.isAxis(old) })
 }
 
 // RemoveAxis takes an axis out that no block and no track names any more.
@@ -98,7 +98,7 @@ func (f *File) RemoveAxis(name string) error {
 	if err := d.cut(d.root, "axes", true, func(i int) bool { return mappingKeys(child(d.root, "axes"))[i].Value == name }); err != nil {
 		return fmt.Errorf("axis %s: %w", name, err)
 	}
-	return f.take("axis "+name, d.src.data, func(g *File) bool { return !g.isAxis(name) })
+	return f.take("axis "+name, d, func(g *File) bool { return !g.isAxis(name) })
 }
 
 // usersOf lists what names an axis.

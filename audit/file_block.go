@@ -51,7 +51,7 @@ func (f *File) AddBlock(circuitName, kindName string, at [2]float64, id string) 
 	if err := d.add(d.circuit(f.circuitIndex(circuitName)), "blocks", false, encode(id, true)+": {"+strings.Join(words, ", ")+"}"); err != nil {
 		return "", fmt.Errorf("%s: %w", id, err)
 	}
-	return id, f.take(id, d.src.data, func(g *File) bool {
+	return id, f.take(id, d, func(g *File) bool {
 		b := g.Circuit(circuitName).Block(id)
 		return b != nil && b.Kind == kind.Name && b.At != nil && *b.At == at
 	})

@@ -32,7 +32,7 @@ func (f *File) Clear(target string) error {
 	if err := d.do(splices, nil); err != nil {
 		return fmt.Errorf("%s: %w", target, err)
 	}
-	return f.take(target, d.src.data, func(g *File) bool { return true })
+	return f.take(target, d, func(g *File) bool { return true })
 }
 
 // cutOne takes one key out of a mapping; nothing where it has none.
@@ -79,5 +79,5 @@ func (f *File) PutOil(keys map[string]string) error {
 			return fmt.Errorf("oil.%s: %w", k.Value, err)
 		}
 	}
-	return f.take("oil", d.src.data, func(g *File) bool { return len(mappingKeys(child(g.root, "oil"))) == len(keys) })
+	return f.take("oil", d, func(g *File) bool { return len(mappingKeys(child(g.root, "oil"))) == len(keys) })
 }

@@ -141,7 +141,7 @@ func (f *File) Paste(circuitName, text string, shift [2]float64) (map[string]str
 			return nil, fmt.Errorf("paste into %q: %w", circuitName, err)
 		}
 	}
-	return ids, f.take("paste", d.src.data, func(h *File) bool {
+	return ids, f.take("paste", d, func(h *File) bool {
 		c := h.Circuit(circuitName)
 		return len(c.Blocks) == len(e.Blocks)+len(blocks) && len(c.Lines) == len(e.Lines)+len(lines)
 	})

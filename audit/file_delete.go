@@ -52,7 +52,7 @@ func (f *File) Delete(circuitName string, heal bool, ids ...string) error {
 		return fmt.Errorf("%s: %w", what, err)
 	}
 	lines := wanted(e.Lines, want)
-	return f.take(what, d.src.data, func(g *File) bool {
+	return f.take(what, d, func(g *File) bool {
 		c := g.Circuit(circuitName)
 		return sameLines(c.Lines, lines) && !slices.ContainsFunc(c.Blocks, func(b circuit.Block) bool { return slices.Contains(ids, b.ID) })
 	})

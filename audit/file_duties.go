@@ -22,10 +22,15 @@ func (f *File) AddDuty(name, length string) error {
 		return fmt.Errorf("duty %q: it lasts %q; write a time above 0, such as 10 s", name, length)
 	}
 	d := f.draft()
-	if err := d.addItem("duties", []string{"name: " + encode(name, true), "points: {t: [0 s, " + encode(strings.TrimSpace(length), false) + "]}"}); err != nil {
+	n := len(f.Duties)
+	err := d.addItem("duties", []string{"name: " + encode(name, true), "points: {}"})
+	if err == nil {
+		err = d.add(d.duty(n), "points", false, "t: [0 s, "+encode(strings.TrimSpace(length), false)+"]")
+	}
+	if err != nil {
 		return fmt.Errorf("duty %q: %w", name, err)
 	}
-	return f.take(name, d.src.data, func(g *File) bool { return g.dutyIndex(name) == len(f.Duties) })
+	return f.take(name, d, func(g *File) bool { return g.dutyIndex(name) == n })
 }
 
 // RenameDuty gives a duty another name.
@@ -128,7 +133,7 @@ func (f *File) dutyEdit(d *draft, i int, err error, holds func(*File) bool) erro
 	if err != nil {
 		return fmt.Errorf("%s: %w", what, err)
 	}
-	return f.take(what, d.src.data, holds)
+	return f.take(what, d, holds)
 }
 
 func (f *File) dutyNode(i int) *yaml.Node { return item(child(f.root, "duties"), i) }

@@ -70,6 +70,15 @@ func (f *File) Set(target, quantity string) error {
 			return fmt.Errorf("%s: %w", p.label, err)
 		}
 		splices = append(splices, band...)
+		if v := child(p.mapping, p.key); p.attribute == "" && v != nil {
+			if n := child(v, "note"); n != nil && n.Value == typicalNote { // it was put in
+				gone, err := src.cutOne(v, "note")
+				if err != nil {
+					return fmt.Errorf("%s: %w", p.label, err)
+				}
+				splices = append(splices, gone...)
+			}
+		}
 	}
 	return f.change(target, splices, func(g *File) bool { return g.holds(target, quantity) })
 }
@@ -174,12 +183,16 @@ func (f *File) fits(p place, quantity string) error {
 // change applies splices if the edited text reads as well as the old one and has
 // what was asked for; else nothing is changed.
 func (f *File) change(what string, splices []splice, holds func(*File) bool) error {
-	return f.take(what, apply(f.data, splices), holds)
+	d := f.draft()
+	if err := d.do(splices, nil); err != nil {
+		return fmt.Errorf("%s: %w", what, err)
+	}
+	return f.take(what, d, holds)
 }
 
-// take is change for a text that is edited already.
-func (f *File) take(what string, data []byte, holds func(*File) bool) error {
-	g, found := parse(data, f.open, f.Path, f.tables)
+// take is change for a draft.
+func (f *File) take(what string, d *draft, holds func(*File) bool) error {
+	g, found := parseTree(d.root, d.src.data, f.open, f.Path, f.tables)
 	if g == nil {
 		return fmt.Errorf("%s: %w", what, errLayout)
 	}

@@ -219,7 +219,7 @@ func (f *File) redraw(e *CircuitEntry, what string, want map[int][]circuit.PortR
 		return fmt.Errorf("%s: %w", what, err)
 	}
 	lines := wanted(e.Lines, want, added)
-	return f.take(what, d.src.data, func(g *File) bool { return sameLines(g.Circuit(e.Name).Lines, lines) })
+	return f.take(what, d, func(g *File) bool { return sameLines(g.Circuit(e.Name).Lines, lines) })
 }
 
 // wanted returns the ports of all lines as they should be after setLines.

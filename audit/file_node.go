@@ -235,13 +235,17 @@ func (r *reader) plain(n *yaml.Node) bool {
 
 // parse is Parse with the recordings that are read already.
 func parse(data []byte, open Open, path string, tables map[string]*recorded) (*File, []circuit.Finding) {
-	f := &File{Path: path, data: data, open: open, tables: tables}
-	r := &reader{file: f, axes: map[string]bool{}, blocks: map[string]bool{}}
 	root, faults := load(data)
 	if len(faults) > 0 {
 		return nil, faults
 	}
-	f.root = root
+	return parseTree(root, data, open, path, tables)
+}
+
+// parseTree is parse for a text whose node tree is made already.
+func parseTree(root *yaml.Node, data []byte, open Open, path string, tables map[string]*recorded) (*File, []circuit.Finding) {
+	f := &File{Path: path, data: data, root: root, open: open, tables: tables}
+	r := &reader{file: f, axes: map[string]bool{}, blocks: map[string]bool{}}
 	if !r.plain(root) || !r.top(root) {
 		return nil, r.found
 	}

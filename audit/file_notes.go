@@ -132,5 +132,5 @@ func (f *File) sheetEdit(e *CircuitEntry, what string, change func(d *draft, ci 
 	if err := change(d, f.circuitIndex(e.Name)); err != nil {
 		return fmt.Errorf("circuit %q, %s: %w", e.Name, what, err)
 	}
-	return f.take(what, d.src.data, func(g *File) bool { return holds(g.Circuit(e.Name)) })
+	return f.take(what, d, func(g *File) bool { return holds(g.Circuit(e.Name)) })
 }

@@ -39,7 +39,7 @@ func (f *File) Rename(circuitName, old, id string) error {
 			return err
 		}
 	}
-	return f.take(old, d.src.data, func(g *File) bool {
+	return f.take(old, d, func(g *File) bool {
 		c := g.Circuit(circuitName)
 		return c.Block(old) == nil && c.Block(id) != nil && len(c.Lines) == len(e.Lines)
 	})

@@ -23,7 +23,7 @@ func (f *File) AddCircuit(name string, role Role) error {
 	if err := d.addItem("circuits", keys); err != nil {
 		return fmt.Errorf("circuit %q: %w", name, err)
 	}
-	return f.take(name, d.src.data, func(g *File) bool {
+	return f.take(name, d, func(g *File) bool {
 		e := g.Circuit(name)
 		return len(g.Circuits) == len(f.Circuits)+1 && e != nil && e.Role == role
 	})
@@ -73,7 +73,7 @@ func (f *File) CopyCircuit(from, name string) error {
 			return fail(err)
 		}
 	}
-	return f.take(name, d.src.data, func(g *File) bool {
+	return f.take(name, d, func(g *File) bool {
 		c := g.Circuit(name)
 		return c != nil && c.Role == Proposal && len(c.Blocks) == len(e.Blocks) && len(c.Lines) == len(e.Lines)
 	})
@@ -117,7 +117,7 @@ func (f *File) DeleteCircuit(name string) error {
 	if err := d.cut(d.root, "circuits", true, func(k int) bool { return k == i }); err != nil {
 		return fmt.Errorf("circuit %q: %w", name, err)
 	}
-	return f.take(name, d.src.data, func(g *File) bool { return len(g.Circuits) == len(f.Circuits)-1 && g.Circuit(name) == nil })
+	return f.take(name, d, func(g *File) bool { return len(g.Circuits) == len(f.Circuits)-1 && g.Circuit(name) == nil })
 }
 
 // RenameCircuit gives a circuit another name.
@@ -135,7 +135,7 @@ func (f *File) RenameCircuit(old, name string) error {
 	if err := d.one(d.src.put(d.circuit(i), "name", encode(name, true))); err != nil {
 		return fmt.Errorf("circuit %q: %w", old, err)
 	}
-	return f.take(old, d.src.data, func(g *File) bool { return g.circuitIndex(name) == i })
+	return f.take(old, d, func(g *File) bool { return g.circuitIndex(name) == i })
 }
 
 func (f *File) mayBeNamed(name string) error {
@@ -184,7 +184,7 @@ func (f *File) SwapRoles(first, second string) error {
 			return fmt.Errorf("%s: %w", f.Circuits[found].Name, err)
 		}
 	}
-	return f.take("roles", d.src.data, func(g *File) bool {
+	return f.take("roles", d, func(g *File) bool {
 		return g.Circuits[found].Role == Proposal && g.Circuits[proposed].Role == AsFound
 	})
 }

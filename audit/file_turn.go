@@ -108,7 +108,7 @@ func (f *File) pose(circuitName string, ids []string, change func(b *circuit.Blo
 	if err := d.do(splices, nil); err != nil {
 		return fmt.Errorf("%s: %w", what, err)
 	}
-	return f.take(what, d.src.data, func(g *File) bool {
+	return f.take(what, d, func(g *File) bool {
 		for id, want := range blocks {
 			b := g.Circuit(circuitName).Block(id)
 			if b == nil || b.Turn != want.Turn || b.Mirror != want.Mirror || want.At != nil && (b.At == nil || *b.At != *want.At) {
