@@ -10,6 +10,7 @@ import (
 	"time"
 
 	"barlitre/circuit"
+	"barlitre/circuit/duty"
 )
 
 // sheet is a file with comments everywhere that an edit may meet them.
@@ -93,8 +94,9 @@ func TestAddBlock(t *testing.T) {
 	if v := f.Circuit("As found").Block("RV1").Values["crack"]; v.Origin != circuit.Assumed || v.SI != 160e5 {
 		t.Errorf("got %+v", v)
 	}
+	becomes(t, f, f.Delete("As found", false, "RV1"))
 	for _, c := range []struct{ kind, id, want string }{
-		{"relief", "", "RV2"}, {"pump", "", "P2"}, {"valve", "", "V2"}, {"cylinder", "C9", "C9"}, {"cylinder", "", "C1"},
+		{"relief", "", "RV1"}, {"relief", "", "RV2"}, {"pump", "", "P2"}, {"valve", "", "V2"}, {"cylinder", "C9", "C9"}, {"cylinder", "", "C1"},
 	} {
 		if id, err := f.AddBlock("As found", c.kind, [2]float64{}, c.id); err != nil || id != c.want {
 			t.Errorf("%s: %q, %v", c.kind, id, err)
@@ -108,7 +110,7 @@ func TestAddBlock(t *testing.T) {
 		t.Errorf("the second cylinder takes axis %q, which is moved already", a)
 	}
 	if a := e.Block("V2").Word("follows"); a != "ram" {
-		t.Errorf("the valve follows %q", a)
+		t.Errorf("the second valve follows %q; the first is commanded", a)
 	}
 	for _, c := range [][3]string{
 		{"As found", "relif", `did you mean "relief"?`}, {"As", "relief", `there is no circuit "As"`}, {"As found", "relief", "has a block V1 already"},
@@ -116,6 +118,34 @@ func TestAddBlock(t *testing.T) {
 		before := f.Bytes()
 		if _, err := f.AddBlock(c[0], c[1], [2]float64{}, "V1"); err == nil || !strings.Contains(err.Error(), c[2]) || !bytes.Equal(before, f.Bytes()) {
 			t.Errorf("%v: got %v", c, err)
+		}
+	}
+}
+
+// An actuator that takes the only axis gives it to the only valve that waits for one.
+func TestAddBlockBindsTheWaitingValve(t *testing.T) {
+	start := "format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\naxes: {}\nduties: [{name: d, points: {t: [0 s, 1 s]}}]\ncircuits: [{name: x}]\n"
+	draw := func(valves int) *File {
+		f := mustParse(t, start)
+		for i := 0; i < valves; i++ {
+			if _, err := f.AddBlock("x", "valve", [2]float64{}, ""); err != nil {
+				t.Fatal(err)
+			}
+		}
+		if err := f.AddAxis("ram", duty.Linear); err != nil {
+			t.Fatal(err)
+		}
+		if _, err := f.AddBlock("x", "cylinder", [2]float64{}, ""); err != nil {
+			t.Fatal(err)
+		}
+		return f
+	}
+	if b := draw(1).Circuits[0].Block("V1"); b.Word("follows") != "ram" {
+		t.Errorf("the only valve follows %q", b.Word("follows"))
+	}
+	for _, id := range []string{"V1", "V2"} {
+		if b := draw(2).Circuits[0].Block(id); b.Word("follows") != "" {
+			t.Errorf("%s of two valves follows %q; that is for the user to say", id, b.Word("follows"))
 		}
 	}
 }
@@ -175,9 +205,9 @@ func TestConnectRefuses(t *testing.T) {
 		t.Fatal(err)
 	}
 	for _, c := range [][3]string{
-		{"M1.shaft", "P1.P", "oil (F1.A) and shaft (M1.shaft)"},
-		{"M1.shaft", "SV1.X", "pilot (SV1.X) and shaft (M1.shaft)"},
-		{"M1.E", "P1.shaft", "electric (M1.E) and shaft (P1.shaft)"},
+		{"M1.shaft", "P1.P", "M1.shaft is a shaft, which turns, P1.P is an oil line; they cannot be connected. Choose another shaft for M1.shaft"},
+		{"M1.shaft", "SV1.X", "SV1.X is a pilot line"},
+		{"M1.E", "P1.shaft", "M1.E is a motor's electric feed, P1.shaft is a shaft"},
 		{"SV2.A", "P1.P", "signal outlet SV2.A stands on an oil line"},
 		{"SV1.A", "SV2.A", "two signals meet at SV1.A and SV2.A"},
 		{"LP1.P", "T1.T", "hold one line at pressures of their own"},
@@ -247,6 +277,37 @@ func TestDelete(t *testing.T) {
 	f = sheetFile(t)
 	if err := f.Delete("As found", false, "P1", "X9"); err == nil || !strings.Contains(err.Error(), `no block "X9"`) {
 		t.Errorf("got %v", err)
+	}
+}
+
+// A junction that goes joins its lines; what must not become one is not healed.
+func TestDeleteHeals(t *testing.T) {
+	f := sheetFile(t)
+	if _, err := f.AddJunction("As found", 1, [2]float64{}); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Connect("As found", "J1.2", "P1.LS"); err != nil {
+		t.Fatal(err)
+	}
+	becomes(t, f, f.Delete("As found", true, "J1"), "P1.P - F1.A", "P1.P - F1.A - P1.LS")
+	for _, do := range []error{f.Disconnect("As found", "V1.P"), f.Disconnect("As found", "P1.P"), f.Connect("As found", "F1.A", "T1.T")} {
+		if do != nil {
+			t.Fatal(do)
+		}
+	}
+	id, err := f.AddBlock("As found", "pressure_source", [2]float64{}, "")
+	if err == nil {
+		err = f.Connect("As found", "F1.B", id+".P")
+	}
+	if err != nil {
+		t.Fatal(err)
+	}
+	before := f.Bytes()
+	if err := f.Delete("As found", true, "F1"); err == nil || !strings.Contains(err.Error(), "F1: the lines on both sides cannot become one: LP1 and T1 hold") || !bytes.Equal(before, f.Bytes()) {
+		t.Errorf("got %v", err)
+	}
+	if err := f.Delete("As found", false, "F1"); err != nil {
+		t.Error(err)
 	}
 }
 
