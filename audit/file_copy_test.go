@@ -3,11 +3,13 @@ package audit
 import (
 	"bytes"
 	"os"
+	"path/filepath"
 	"slices"
 	"strings"
 	"testing"
 
 	"barlitre/circuit"
+	"barlitre/circuit/duty"
 )
 
 // What is copied from one file can be pasted into any other, flow style too.
@@ -114,5 +116,79 @@ func TestDrawInAllFiles(t *testing.T) {
 		if len(names) < 20 || !bytes.Equal(before, f.Bytes()) && strings.Count(string(before), "  -  ") == 0 {
 			t.Errorf("%s is not as before", name)
 		}
+	}
+}
+
+// Whatever is wrong with a file and however it is laid out: an edit is done or refused,
+// never half, and none panics.
+func TestEditsOfFaultyFiles(t *testing.T) {
+	var names []string
+	for _, pattern := range []string{"testdata/*.yaml", "testdata/wrong/*.yaml", "testdata/wrong_circuits/*.yaml", "testdata/published/*.yaml"} {
+		list, err := filepath.Glob(pattern)
+		if err != nil {
+			t.Fatal(err)
+		}
+		names = append(names, list...)
+	}
+	done, refused := 0, 0
+	for _, name := range names {
+		f, _ := Read(name)
+		if f == nil {
+			continue
+		}
+		sheet, block, port, dutyName := "x", "P1", "P1.P", "x"
+		if len(f.Circuits) > 0 {
+			e := f.Circuits[len(f.Circuits)-1]
+			sheet = e.Name
+			if len(e.Blocks) > 0 {
+				block = e.Blocks[len(e.Blocks)/2].ID
+			}
+			if len(e.Lines) > 0 {
+				port = e.Lines[0].Ports[0].String()
+			}
+		}
+		if len(f.Duties) > 0 {
+			dutyName = f.Duties[0].Name
+		}
+		for what, edit := range map[string]func(g *File) error{
+			"add":        func(g *File) error { _, err := g.AddBlock(sheet, "pump", [2]float64{1, 2}, ""); return err },
+			"connect":    func(g *File) error { return g.Connect(sheet, port, "T1.T") },
+			"join":       func(g *File) error { return g.JoinLines(sheet, 0, 1) },
+			"disconnect": func(g *File) error { return g.Disconnect(sheet, port) },
+			"delete":     func(g *File) error { return g.Delete(sheet, true, block) },
+			"rename":     func(g *File) error { return g.Rename(sheet, block, "NEW1") },
+			"turn":       func(g *File) error { return g.Rotate(sheet, 1, block) },
+			"duplicate":  func(g *File) error { _, err := g.Duplicate(sheet, [2]float64{1, 1}, block); return err },
+			"circuit":    func(g *File) error { return g.AddCircuit("new", Proposal) },
+			"copy":       func(g *File) error { return g.CopyCircuit(sheet, "new") },
+			"drop":       func(g *File) error { return g.DeleteCircuit(sheet) },
+			"axis":       func(g *File) error { return g.AddAxis("new", duty.Rotary) },
+			"duty":       func(g *File) error { return g.AddDuty("new", "1 s") },
+			"row":        func(g *File) error { return g.AddRow(dutyName, 1, map[string]string{"t": "0 s"}) },
+			"no row":     func(g *File) error { return g.RemoveRow(dutyName, 1) },
+			"no duty":    func(g *File) error { return g.RemoveDuty(dutyName) },
+			"hours":      func(g *File) error { return g.SetDuty(dutyName, "hours", "10 h") },
+			"note":       func(g *File) error { _, err := g.AddNote(sheet, "note", [2]float64{1, 1}); return err },
+			"group":      func(g *File) error { _, err := g.AddGroup(sheet, "group", block); return err },
+			"oil":        func(g *File) error { return g.PutOil(map[string]string{"temperature": "50 C", "grade": "ISO VG 32"}) },
+		} {
+			g := *f
+			if err := edit(&g); err != nil {
+				refused++
+				if !bytes.Equal(g.Bytes(), f.Bytes()) {
+					t.Errorf("%s, %s: refused (%v), but the text changed", name, what, err)
+				}
+				continue
+			}
+			done++
+			h, found := Parse(g.Bytes(), f.open, f.Path)
+			if h == nil || len(found) > len(f.found)+1 {
+				t.Errorf("%s, %s: %v\n%s", name, what, found, g.Bytes())
+			}
+		}
+	}
+	t.Logf("%d files, %d edits done, %d refused", len(names), done, refused)
+	if done < 5*len(names) {
+		t.Errorf("only %d edits of %d files were done", done, len(names))
 	}
 }

@@ -114,13 +114,13 @@ func (p *player) edit() (what string, err error) {
 	axis := pick(p, f.Axes)
 	n := p.r.IntN(1000)
 	switch k := p.r.IntN(100); {
-	case len(e.Blocks) > 14 || k < 12:
+	case len(e.Blocks) > 10 || k < 12:
 		ids := p.ids(&e)
 		for _, id := range ids {
 			p.deleted = append(p.deleted, blockText(string(f.Bytes()), name, id))
 		}
 		return fmt.Sprint("delete ", ids), p.d.Delete(name, k%2 == 0, ids...)
-	case len(f.Circuits) > 4 || k < 13:
+	case len(f.Circuits) > 3 || k < 13:
 		p.deleted = append(p.deleted, circuitText(string(f.Bytes()), name))
 		return "delete circuit", p.d.DeleteCircuit(name)
 	case k < 26:
