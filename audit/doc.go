@@ -9,6 +9,10 @@
 // as found. Every row is integrated for itself, so the balance is a check of the
 // circuit's models and not a way to find a loss.
 //
+// A File is also what a drawing is made in: every edit splices its text, so that
+// comments and layout stay as they are, and is refused with the reason when the text
+// would not read or two ports cannot be joined.
+//
 // It does not balance circuits (package circuit does) and draws nothing: Report holds
 // every figure and sentence that may be shown, Result the same figures for a program.
 //

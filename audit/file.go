@@ -16,8 +16,13 @@ import (
 const Format = "barlitre/1"
 
 // File is an audit file: a machine's circuits, the duties they must do, and
-// what energy costs. It is made by Read or Parse and changed by Set, SetAt and
-// SetPoint only, which keep the text in step.
+// what energy costs. It is made by Read or Parse and changed by its methods only,
+// which keep the text in step: an edit changes the text where it must, reads it again,
+// and takes it if it reads no worse than before; else nothing is changed and the error
+// says why. Values are changed by Set, Put, Clear and SetPoint; a sheet is drawn by
+// AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, SetAt, Rotate, Mirror,
+// AddNote and AddGroup; AddCircuit, CopyCircuit and SwapRoles make and exchange
+// sheets; AddAxis, AddDuty, AddTrack, AddRow and SetDuty say what the machine does.
 //
 // # Format
 //
@@ -93,6 +98,8 @@ const Format = "barlitre/1"
 //	  blocks:
 //	    RV1: {kind: relief, crack: 160 bar, at: [12, 30], turn: 0, mirror: no}
 //	  lines: [P1.P - V1.P - RV1.P]
+//	  notes: [{text: "label not legible", at: [30, 4]}]
+//	  groups: [{label: Power unit, blocks: [M1, P1, RV1]}]
 //
 // In place of points may stand "file: press.csv", a table beside the audit file (or
 // in a folder below it) whose head has the same names with their units: see
@@ -113,7 +120,12 @@ const Format = "barlitre/1"
 // A block is its kind, the parameters of that kind (see circuit.Catalog), and its
 // place on the sheet: at in modules, quarter turns, mirrored or not. Its id is
 // made of letters, digits and _. A line joins the ports that it names. A
-// retrofit_cost is for proposals; low and high go together.
+// retrofit_cost is for proposals; low and high go together. notes are texts on the
+// sheet, at their upper left corner; groups are labelled boxes around blocks. Neither
+// changes what is computed.
+//
+// What Copy puts into the clipboard is an audit file with one circuit, of format, title
+// and circuits alone; Paste takes the first circuit of any audit file.
 type File struct {
 	Path  string // where it was read from; "" when it has no file yet
 	Title string

@@ -47,8 +47,13 @@ func (f *File) AddBlock(circuitName, kindName string, at [2]float64, id string) 
 		words = append(words, fmt.Sprintf("%s: {value: %s, origin: %s, note: %s}", t.Key, encode(t.Text, false), circuit.Assumed, encode(typicalNote, true)))
 	}
 	words = append(words, "at: "+placeText(at))
-	d := f.draft()
-	if err := d.add(d.circuit(f.circuitIndex(circuitName)), "blocks", false, encode(id, true)+": {"+strings.Join(words, ", ")+"}"); err != nil {
+	d, ci := f.draft(), f.circuitIndex(circuitName)
+	if valve, axis := f.waiting(e, kind); valve != "" {
+		if err := d.one(d.src.insert(child(child(d.circuit(ci), "blocks"), valve), "follows", encode(axis, true))); err != nil {
+			return "", fmt.Errorf("%s: %w", valve, err)
+		}
+	}
+	if err := d.add(d.circuit(ci), "blocks", false, encode(id, true)+": {"+strings.Join(words, ", ")+"}"); err != nil {
 		return "", fmt.Errorf("%s: %w", id, err)
 	}
 	return id, f.take(id, d, func(g *File) bool {
@@ -128,7 +133,7 @@ func (f *File) mayBeCalled(e *CircuitEntry, id string) error {
 // choice is the user's: an actuator takes the only axis of its sort that nothing
 // moves yet, a directional valve the only one that nothing controls.
 func (f *File) axisFor(e *CircuitEntry, kind *circuit.Kind, key string) string {
-	valve := key == "follows" && kind.Port("A") != nil
+	valve := key == "follows" && isDirectional(kind)
 	if !valve && key != "axis" {
 		return ""
 	}
@@ -145,6 +150,31 @@ func (f *File) axisFor(e *CircuitEntry, kind *circuit.Kind, key string) string {
 		return ""
 	}
 	return free[0]
+}
+
+// isDirectional reports whether blocks of a kind throttle or direct an actuator.
+func isDirectional(kind *circuit.Kind) bool { return kind.Param("directs") != nil }
+
+// waiting returns the only directional valve of a circuit that nothing controls yet,
+// and the axis that a new actuator gives it, where no other control has that.
+func (f *File) waiting(e *CircuitEntry, actuator *circuit.Kind) (valve, axis string) {
+	if actuator.Param("axis") == nil {
+		return "", ""
+	}
+	axis = f.axisFor(e, actuator, "axis")
+	for _, b := range e.Blocks {
+		kind := circuit.KindNamed(b.Kind)
+		switch follows, directs := b.Word("follows"), b.Word("directs"); {
+		case axis == "" || follows == axis || directs == axis:
+			return "", ""
+		case kind == nil || !isDirectional(kind) || follows+directs != "" || f.hasTrackOf(b.ID):
+		case valve != "":
+			return "", "" // two wait; which it is only the user knows
+		default:
+			valve = b.ID
+		}
+	}
+	return valve, axis
 }
 
 // axisKeys are the parameters that bind a block to an axis.

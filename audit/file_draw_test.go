@@ -2,14 +2,11 @@ package audit
 
 import (
 	"bytes"
-	"fmt"
-	"os"
-	"slices"
 	"strings"
 	"testing"
-	"time"
 
 	"barlitre/circuit"
+	"barlitre/circuit/duty"
 )
 
 // sheet is a file with comments everywhere that an edit may meet them.
@@ -93,8 +90,9 @@ func TestAddBlock(t *testing.T) {
 	if v := f.Circuit("As found").Block("RV1").Values["crack"]; v.Origin != circuit.Assumed || v.SI != 160e5 {
 		t.Errorf("got %+v", v)
 	}
+	becomes(t, f, f.Delete("As found", false, "RV1"))
 	for _, c := range []struct{ kind, id, want string }{
-		{"relief", "", "RV2"}, {"pump", "", "P2"}, {"valve", "", "V2"}, {"cylinder", "C9", "C9"}, {"cylinder", "", "C1"},
+		{"relief", "", "RV1"}, {"relief", "", "RV2"}, {"pump", "", "P2"}, {"valve", "", "V2"}, {"cylinder", "C9", "C9"}, {"cylinder", "", "C1"},
 	} {
 		if id, err := f.AddBlock("As found", c.kind, [2]float64{}, c.id); err != nil || id != c.want {
 			t.Errorf("%s: %q, %v", c.kind, id, err)
@@ -108,7 +106,7 @@ func TestAddBlock(t *testing.T) {
 		t.Errorf("the second cylinder takes axis %q, which is moved already", a)
 	}
 	if a := e.Block("V2").Word("follows"); a != "ram" {
-		t.Errorf("the valve follows %q", a)
+		t.Errorf("the second valve follows %q; the first is commanded", a)
 	}
 	for _, c := range [][3]string{
 		{"As found", "relif", `did you mean "relief"?`}, {"As", "relief", `there is no circuit "As"`}, {"As found", "relief", "has a block V1 already"},
@@ -116,6 +114,34 @@ func TestAddBlock(t *testing.T) {
 		before := f.Bytes()
 		if _, err := f.AddBlock(c[0], c[1], [2]float64{}, "V1"); err == nil || !strings.Contains(err.Error(), c[2]) || !bytes.Equal(before, f.Bytes()) {
 			t.Errorf("%v: got %v", c, err)
+		}
+	}
+}
+
+// An actuator that takes the only axis gives it to the only valve that waits for one.
+func TestAddBlockBindsTheWaitingValve(t *testing.T) {
+	start := "format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\naxes: {}\nduties: [{name: d, points: {t: [0 s, 1 s]}}]\ncircuits: [{name: x}]\n"
+	draw := func(valves int) *File {
+		f := mustParse(t, start)
+		for i := 0; i < valves; i++ {
+			if _, err := f.AddBlock("x", "valve", [2]float64{}, ""); err != nil {
+				t.Fatal(err)
+			}
+		}
+		if err := f.AddAxis("ram", duty.Linear); err != nil {
+			t.Fatal(err)
+		}
+		if _, err := f.AddBlock("x", "cylinder", [2]float64{}, ""); err != nil {
+			t.Fatal(err)
+		}
+		return f
+	}
+	if b := draw(1).Circuits[0].Block("V1"); b.Word("follows") != "ram" {
+		t.Errorf("the only valve follows %q", b.Word("follows"))
+	}
+	for _, id := range []string{"V1", "V2"} {
+		if b := draw(2).Circuits[0].Block(id); b.Word("follows") != "" {
+			t.Errorf("%s of two valves follows %q; that is for the user to say", id, b.Word("follows"))
 		}
 	}
 }
@@ -134,91 +160,6 @@ func TestEveryKindBeginsComplete(t *testing.T) {
 				t.Errorf("%s: %s", k.Name, n.Text)
 			}
 		}
-	}
-}
-
-func TestConnectWrites(t *testing.T) {
-	for name, c := range map[string]struct {
-		do    func(f *File) error
-		pairs []string
-	}{
-		"new line":           {func(f *File) error { return f.Connect("As found", "P1.D", "T1.T") }, []string{"  - V1.T - T1.T\n", "  - V1.T - T1.T\n  - P1.D - T1.T\n"}},
-		"on a line":          {func(f *File) error { return f.Connect("As found", "P1.LS", "V1.P") }, []string{`"CK1.out - V1.P"`, `"CK1.out - V1.P - P1.LS"`}},
-		"on a line, turned":  {func(f *File) error { return f.Connect("As found", "F1.A", "P1.LS") }, []string{"P1.P - F1.A", "P1.P - F1.A - P1.LS"}},
-		"on a line by place": {func(f *File) error { return f.ConnectLine("As found", "P1.LS", 3) }, []string{`"CK1.out - V1.P"`, `"CK1.out - V1.P - P1.LS"`}},
-		"two lines": {func(f *File) error { return f.Connect("As found", "V1.P", "P1.P") },
-			[]string{"P1.P - F1.A", "P1.P - F1.A - CK1.out - V1.P", "  - \"CK1.out - V1.P\"\n", ""}},
-		"two lines by place": {func(f *File) error { return f.JoinLines("As found", 2, 1) },
-			[]string{"P1.P - F1.A", "P1.P - F1.A - F1.B - CK1.in", "- F1.B - CK1.in   # clean", "# clean"}},
-		"junction": {func(f *File) error { _, err := f.AddJunction("As found", 1, [2]float64{7, 8}); return err },
-			[]string{"P1.P - F1.A", "P1.P - F1.A - J1.1", "turn: 1}\n", "turn: 1}\n    J1: {kind: junction, at: [7, 8]}\n"}},
-		"off a line":       {func(f *File) error { return f.Disconnect("As found", "P1.S") }, []string{"- T1.T - P1.S # suction", "# suction"}},
-		"a tank":           {func(f *File) error { return f.Disconnect("As found", "T1.T") }, []string{"- T1.T - P1.S # suction", "# suction", "  - V1.T - T1.T\n", ""}},
-		"a tank, one line": {func(f *File) error { return f.DisconnectFrom("As found", "T1.T", 4) }, []string{"  - V1.T - T1.T\n", ""}},
-		"a line":           {func(f *File) error { return f.DeleteLine("As found", 1) }, []string{"  - P1.P - F1.A\n", ""}},
-	} {
-		t.Run(name, func(t *testing.T) {
-			f := sheetFile(t)
-			becomes(t, f, c.do(f), c.pairs...)
-		})
-	}
-}
-
-func TestConnectRefuses(t *testing.T) {
-	f := sheetFile(t)
-	for _, kind := range []string{"electric_motor", "shuttle", "cylinder", "pressure_source", "shuttle"} {
-		if _, err := f.AddBlock("As found", kind, [2]float64{}, ""); err != nil {
-			t.Fatal(err)
-		}
-	}
-	if err := f.Connect("As found", "SV1.A", "SV2.X"); err != nil {
-		t.Fatal(err)
-	}
-	for _, c := range [][3]string{
-		{"M1.shaft", "P1.P", "oil (F1.A) and shaft (M1.shaft)"},
-		{"M1.shaft", "SV1.X", "pilot (SV1.X) and shaft (M1.shaft)"},
-		{"M1.E", "P1.shaft", "electric (M1.E) and shaft (P1.shaft)"},
-		{"SV2.A", "P1.P", "signal outlet SV2.A stands on an oil line"},
-		{"SV1.A", "SV2.A", "two signals meet at SV1.A and SV2.A"},
-		{"LP1.P", "T1.T", "hold one line at pressures of their own"},
-		{"P1.P", "F1.A", "on one line already"},
-		{"P1.P", "P1.P", "to itself"},
-		{"P1.P", "P1.S", "of one block"},
-		{"C1.A", "C1.B", "of one block"},
-		{"P1.X", "T1.T", `no port "X"; it has shaft, S, P, D and LS`},
-		{"P7.P", "T1.T", "there is no block P7"},
-		{"P1", "T1.T", "write block.port"},
-	} {
-		before := f.Bytes()
-		if err := f.Connect("As found", c[0], c[1]); err == nil || !strings.Contains(err.Error(), c[2]) {
-			t.Errorf("%v: got %v", c, err)
-		}
-		if !bytes.Equal(before, f.Bytes()) {
-			t.Errorf("%v: refused, but the text changed", c)
-		}
-	}
-	if err := f.Connect("As found", "M1.shaft", "P1.shaft"); err != nil {
-		t.Fatal(err)
-	}
-	if _, err := f.AddJunction("As found", len(f.Circuits[0].Lines)-1, [2]float64{}); err == nil || !strings.Contains(err.Error(), "line of type shaft") {
-		t.Errorf("a junction on a shaft: %v", err)
-	}
-	if err := f.Disconnect("As found", "C1.A"); err == nil {
-		t.Error("disconnected what stands on no line")
-	}
-}
-
-// Lines of the two sides of a junction are one node already.
-func TestConnectThroughJunction(t *testing.T) {
-	f := sheetFile(t)
-	if _, err := f.AddJunction("As found", 1, [2]float64{}); err != nil {
-		t.Fatal(err)
-	}
-	if err := f.Connect("As found", "J1.2", "P1.LS"); err != nil {
-		t.Fatal(err)
-	}
-	if err := f.Connect("As found", "P1.LS", "F1.A"); err == nil || !strings.Contains(err.Error(), "joined already, by a junction") {
-		t.Errorf("got %v", err)
 	}
 }
 
@@ -247,6 +188,37 @@ func TestDelete(t *testing.T) {
 	f = sheetFile(t)
 	if err := f.Delete("As found", false, "P1", "X9"); err == nil || !strings.Contains(err.Error(), `no block "X9"`) {
 		t.Errorf("got %v", err)
+	}
+}
+
+// A junction that goes joins its lines; what must not become one is not healed.
+func TestDeleteHeals(t *testing.T) {
+	f := sheetFile(t)
+	if _, err := f.AddJunction("As found", 1, [2]float64{}); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Connect("As found", "J1.2", "P1.LS"); err != nil {
+		t.Fatal(err)
+	}
+	becomes(t, f, f.Delete("As found", true, "J1"), "P1.P - F1.A", "P1.P - F1.A - P1.LS")
+	for _, do := range []error{f.Disconnect("As found", "V1.P"), f.Disconnect("As found", "P1.P"), f.Connect("As found", "F1.A", "T1.T")} {
+		if do != nil {
+			t.Fatal(do)
+		}
+	}
+	id, err := f.AddBlock("As found", "pressure_source", [2]float64{}, "")
+	if err == nil {
+		err = f.Connect("As found", "F1.B", id+".P")
+	}
+	if err != nil {
+		t.Fatal(err)
+	}
+	before := f.Bytes()
+	if err := f.Delete("As found", true, "F1"); err == nil || !strings.Contains(err.Error(), "F1: the lines on both sides cannot become one: LP1 and T1 hold") || !bytes.Equal(before, f.Bytes()) {
+		t.Errorf("got %v", err)
+	}
+	if err := f.Delete("As found", false, "F1"); err != nil {
+		t.Error(err)
 	}
 }
 
@@ -280,167 +252,5 @@ func TestTurnAndMirror(t *testing.T) {
 	}
 	if b := f.Circuit("As found").Block("V1"); *b.At != [2]float64{6, 1} || b.Turn != 1 {
 		t.Errorf("four quarter turns leave V1 at %v, turn %d", *b.At, b.Turn)
-	}
-}
-
-// What is copied from one file can be pasted into any other, flow style too.
-func TestCopyPaste(t *testing.T) {
-	f := full(t)
-	e := f.Circuit("As found")
-	var ids []string
-	for _, b := range e.Blocks {
-		ids = append(ids, b.ID)
-	}
-	text, err := f.Copy("As found", ids...)
-	if err != nil {
-		t.Fatal(err)
-	}
-	for name, target := range map[string]string{
-		"block style": "format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\nduties:\n- {name: d, points: {t: [0 s, 1 s]}}\naxes: {ram: linear, drum: rotary}\ncircuits:\n- name: new\n",
-		"flow style":  "{format: barlitre/1, oil: {grade: ISO VG 46, temperature: 50 C}, axes: {ram: linear, drum: rotary}, duties: [{name: d, points: {t: [0 s, 1 s]}}], circuits: [{name: new}]}",
-	} {
-		g := mustParse(t, target)
-		got, err := g.Paste("new", text, [2]float64{10, 0})
-		if err != nil {
-			t.Fatalf("%s: %v", name, err)
-		}
-		c := g.Circuit("new")
-		if len(c.Blocks) != len(ids) || len(c.Lines) != len(e.Lines) {
-			t.Errorf("%s: %d blocks, %d lines", name, len(c.Blocks), len(c.Lines))
-		}
-		for _, b := range e.Blocks {
-			p := c.Block(got[b.ID])
-			if p == nil || p.Kind != b.Kind || len(p.Values) != len(b.Values) || p.Word("axis") != b.Word("axis") {
-				t.Errorf("%s: %s is pasted as %+v", name, b.ID, p)
-				continue
-			}
-			for key, v := range b.Values {
-				w := p.Values[key]
-				if w.SI != v.SI || w.Origin != v.Origin || w.Note != v.Note {
-					t.Errorf("%s: %s.%s: %v became %v", name, b.ID, key, v, w)
-				}
-			}
-			if b.At != nil && (p.At == nil || p.At[0] != b.At[0]+10) {
-				t.Errorf("%s: %s lies at %v", name, b.ID, p.At)
-			}
-		}
-		again, err := g.Paste("new", text, [2]float64{})
-		if err != nil {
-			t.Fatal(err)
-		}
-		for _, b := range e.Blocks {
-			if p := g.Circuit("new").Block(again[b.ID]); p.Word("axis")+p.Word("follows") != "" {
-				t.Errorf("%s: %s takes an axis that is taken", name, p.ID)
-			}
-		}
-	}
-	for _, bad := range []string{"", "hello", "a: [", "format: barlitre/1\n"} {
-		if _, err := f.Paste("As found", bad, [2]float64{}); err == nil || !strings.Contains(err.Error(), "holds no blocks") {
-			t.Errorf("%q: got %v", bad, err)
-		}
-	}
-	s := sheetFile(t)
-	got, err := s.Duplicate("As found", [2]float64{1, 1}, "F1", "CK1", "V1")
-	if err != nil || got["F1"] != "F2" || got["V1"] != "V2" {
-		t.Fatalf("%v, %v", got, err)
-	}
-	c := s.Circuit("As found")
-	if !slices.ContainsFunc(c.Lines, func(l circuit.Line) bool { return portsText(l.Ports) == "F2.B - CK2.in" }) || len(c.Groups) != 3 {
-		t.Errorf("the copy has no lines or group of its own:\n%s", s.Bytes())
-	}
-}
-
-// All files of the tests and samples are followed: a block can be added, connected and
-// deleted again, and the text is then as before.
-func TestDrawInAllFiles(t *testing.T) {
-	var names []string
-	for _, dir := range []string{"testdata/", "testdata/trials/", "testdata/published/", "../samples/", "../samples/starters/"} {
-		list, err := os.ReadDir(dir)
-		if err != nil {
-			t.Fatal(err)
-		}
-		for _, n := range list {
-			if strings.HasSuffix(n.Name(), ".yaml") {
-				names = append(names, dir+n.Name())
-			}
-		}
-	}
-	for _, name := range names {
-		f, _ := Read(name)
-		if f == nil {
-			t.Fatal(name)
-		}
-		before := f.Bytes()
-		for _, e := range f.Circuits {
-			port := e.Lines[0].Ports[0].String()
-			id, err := f.AddBlock(e.Name, "junction", [2]float64{1, 2}, "")
-			if e.TypeOf(e.Lines[0].Ports[0]) == circuit.Oil && err == nil {
-				err = f.Connect(e.Name, id+".1", port)
-			}
-			if err == nil {
-				err = f.Delete(e.Name, false, id)
-			}
-			if err != nil {
-				t.Errorf("%s, %s: %v", name, e.Name, err)
-			}
-		}
-		if len(names) < 20 || !bytes.Equal(before, f.Bytes()) && strings.Count(string(before), "  -  ") == 0 {
-			t.Errorf("%s is not as before", name)
-		}
-	}
-}
-
-// large is a file with two circuits of thirty blocks.
-func large(t testing.TB) *File {
-	var b strings.Builder
-	b.WriteString("format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\naxes: {ram: linear}\nduties:\n- {name: d, points: {t: [0 s, 1 s]}}\ncircuits:\n")
-	for _, name := range []string{"As found", "Proposal"} {
-		b.WriteString("- name: " + name + "\n  blocks:\n    T1: {kind: tank, at: [1, 2]}\n")
-		for i := 1; i < 30; i++ {
-			fmt.Fprintf(&b, "    RV%d: {kind: relief, crack: {value: 160 bar, origin: assumed, low: 150, high: 170, note: as read}, override: {value: 10 bar per 100 L/min, origin: assumed}, at: [%d, 4]}\n", i, i)
-		}
-		b.WriteString("  lines:\n")
-		for i := 1; i < 30; i++ {
-			fmt.Fprintf(&b, "  - RV%d.T - T1.T\n", i)
-		}
-	}
-	return mustParse(t, b.String())
-}
-
-// editsOfLarge are edits of a file of sixty blocks, one of each sort.
-var editsOfLarge = map[string]func(f *File) error{
-	"add":     func(f *File) error { _, err := f.AddBlock("Proposal", "pump", [2]float64{1, 2}, ""); return err },
-	"connect": func(f *File) error { return f.Connect("Proposal", "RV1.P", "RV2.P") },
-	"delete":  func(f *File) error { return f.Delete("Proposal", true, "RV3", "RV4", "RV5", "T1") },
-	"rename":  func(f *File) error { return f.Rename("Proposal", "RV6", "RV99") },
-	"rotate":  func(f *File) error { return f.Rotate("Proposal", 1, "RV7", "RV8") },
-	"duplicate": func(f *File) error {
-		_, err := f.Duplicate("Proposal", [2]float64{1, 1}, "RV7", "RV8", "RV9")
-		return err
-	},
-	"copy": func(f *File) error { return f.CopyCircuit("As found", "Third") },
-	"row":  func(f *File) error { return f.AddRow("d", 1, map[string]string{"t": "0.5 s"}) },
-}
-
-// An edit of a file of sixty blocks takes less than 20 ms, at which a hand waits for nothing.
-func TestEditsAreQuick(t *testing.T) {
-	if testing.Short() {
-		t.Skip("times")
-	}
-	before := *large(t)
-	for name, edit := range editsOfLarge {
-		best := time.Hour
-		for i := 0; i < 10; i++ {
-			f := before
-			start := time.Now()
-			if err := edit(&f); err != nil {
-				t.Fatalf("%s: %v", name, err)
-			}
-			best = min(best, time.Since(start))
-		}
-		t.Logf("%s: %v", name, best)
-		if best > 20*time.Millisecond {
-			t.Errorf("%s takes %v", name, best)
-		}
 	}
 }

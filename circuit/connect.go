@@ -8,6 +8,12 @@ import (
 	"barlitre/circuit/duty"
 )
 
+// passing says in words what a line of a type is, wants what may be connected to it.
+var (
+	passing = map[PortType]string{Oil: "an oil line", Pilot: "a pilot line, which only passes a pressure on", Shaft: "a shaft, which turns", Electric: "a motor's electric feed"}
+	wants   = map[PortType]string{Oil: "an oil or pilot port", Pilot: "an oil or pilot port", Shaft: "another shaft", Electric: "the terminals of a motor or converter"}
+)
+
 // MayJoin reports why the ports of two lines, or two ports that are free, must not
 // become one line, or nil. What is only incomplete, such as a pilot line that nothing
 // gives a pressure to yet, is left to Check.
@@ -22,6 +28,9 @@ func (c *Circuit) MayJoin(a, b PortRef) error {
 	}
 	if a.Block == b.Block && c.senseless(a, b) {
 		return fmt.Errorf("%s and %s are of one block; a line between them would only bridge it. Connect each to another block", a, b)
+	}
+	if s, t := c.TypeOf(a), c.TypeOf(b); s != t && !(s == Oil && t == Pilot) && !(s == Pilot && t == Oil) {
+		return fmt.Errorf("%s is %s, %s is %s; they cannot be connected. Choose %s for %s", a, passing[s], b, passing[t], wants[s], a)
 	}
 	d := *c
 	d.Lines = append(append([]Line{}, c.Lines...), Line{Ports: []PortRef{a, b}})

@@ -3,8 +3,9 @@ package document
 import (
 	"fmt"
 	"math/rand/v2"
-	"regexp"
+	"os"
 	"slices"
+	"strconv"
 	"strings"
 	"testing"
 	"time"
@@ -113,13 +114,13 @@ func (p *player) edit() (what string, err error) {
 	axis := pick(p, f.Axes)
 	n := p.r.IntN(1000)
 	switch k := p.r.IntN(100); {
-	case len(e.Blocks) > 14 || k < 12:
+	case len(e.Blocks) > 10 || k < 12:
 		ids := p.ids(&e)
 		for _, id := range ids {
 			p.deleted = append(p.deleted, blockText(string(f.Bytes()), name, id))
 		}
 		return fmt.Sprint("delete ", ids), p.d.Delete(name, k%2 == 0, ids...)
-	case len(f.Circuits) > 4 || k < 13:
+	case len(f.Circuits) > 3 || k < 13:
 		p.deleted = append(p.deleted, circuitText(string(f.Bytes()), name))
 		return "delete circuit", p.d.DeleteCircuit(name)
 	case k < 26:
@@ -201,124 +202,19 @@ func (p *player) edit() (what string, err error) {
 	return "set", p.d.Set(name+"/"+pick(p, e.Blocks).ID+".nominal_flow", fmt.Sprintf("%d L/min", n))
 }
 
-// circuitText returns the lines of a circuit.
-func circuitText(text, name string) string {
-	lines := strings.SplitAfter(text, "\n")
-	at := slices.IndexFunc(lines, func(l string) bool { return strings.HasPrefix(l, "- ") && strings.Contains(l, name) })
-	if at < 0 {
-		return ""
-	}
-	end := at + 1
-	for end < len(lines) && (strings.HasPrefix(lines[end], " ") || lines[end] == "\n") {
-		end++
-	}
-	return strings.Join(lines[at:end], "")
-}
-
-// blockText returns the lines of a block, from its id to the last that is indented further.
-func blockText(text, name, id string) string {
-	lines := strings.SplitAfter(circuitText(text, name), "\n")
-	at := slices.IndexFunc(lines, func(l string) bool { return strings.HasPrefix(l, "    "+id+":") })
-	if at < 0 {
-		return ""
-	}
-	end := at + 1
-	for end < len(lines) && strings.HasPrefix(lines[end], "     ") {
-		end++
-	}
-	return strings.Join(lines[at:end], "")
-}
-
-var commentMark = regexp.MustCompile(`# c\d+\b`)
-
-func comments(text string) map[string]bool {
-	out := map[string]bool{}
-	for _, c := range commentMark.FindAllString(text, -1) {
-		out[c] = true
-	}
-	return out
-}
-
-// fault says what is illegal in the lines of a circuit: a check of its own, which
-// shares no code with that of the program.
-func fault(c *circuit.Circuit) string {
-	of, joined := map[circuit.PortRef]int{}, map[int]int{} // port to line, line to node
-	var node func(i int) int
-	node = func(i int) int {
-		for joined[i] != i {
-			i = joined[i]
-		}
-		return i
-	}
-	for i, l := range c.Lines {
-		joined[i] = i
-		if len(l.Ports) < 2 {
-			return fmt.Sprintf("line %d has %d ports", i, len(l.Ports))
-		}
-		for _, p := range l.Ports {
-			b := c.Block(p.Block)
-			if b == nil || circuit.KindNamed(b.Kind).Port(p.Port) == nil {
-				return fmt.Sprint("no port ", p)
-			}
-			if j, twice := of[p]; twice && (b.Kind != "tank" || i == j) {
-				return fmt.Sprint(p, " stands twice")
-			}
-			of[p] = i
-		}
-	}
-	for i, l := range c.Lines { // all that a tank or a junction joins is one node
-		for j, m := range c.Lines[:i] {
-			for _, p := range l.Ports {
-				for _, q := range m.Ports {
-					if kind := c.Block(p.Block).Kind; p.Block == q.Block && (kind == "tank" || kind == "junction") {
-						joined[node(i)] = node(j)
-					}
-				}
-			}
-		}
-	}
-	types, signals, held := map[int]map[circuit.PortType]bool{}, map[int]int{}, map[int]map[string]bool{}
-	for i, l := range c.Lines {
-		n := node(i)
-		if types[n] == nil {
-			types[n], held[n] = map[circuit.PortType]bool{}, map[string]bool{}
-		}
-		for _, p := range l.Ports {
-			b := c.Block(p.Block)
-			if b.Kind == "junction" {
-				continue
-			}
-			port := circuit.KindNamed(b.Kind).Port(p.Port)
-			types[n][port.Type] = true
-			if port.Source {
-				signals[n]++
-			}
-			if b.Kind == "tank" {
-				held[n]["tank"] = true
-			} else if b.Kind == "pressure_source" {
-				held[n][b.ID] = true
-			}
-		}
-	}
-	for n, t := range types {
-		switch {
-		case t[circuit.Shaft] && len(t) > 1, t[circuit.Electric] && len(t) > 1:
-			return fmt.Sprintf("line at %v joins %v", c.Lines[n].Ports[0], t)
-		case signals[n] > 1, signals[n] > 0 && t[circuit.Oil]:
-			return fmt.Sprintf("signals at %v", c.Lines[n].Ports[0])
-		case len(held[n]) > 1:
-			return fmt.Sprintf("%v hold %v", held[n], c.Lines[n].Ports[0])
-		}
-	}
-	return ""
-}
-
 // Random edits, undone and done again, never break a file, and lose no comment but
 // those in what was deleted.
 func TestRandomEdits(t *testing.T) {
-	edits := 10_000
-	if testing.Short() {
-		edits = 1000
+	edits, seed := 2000, uint64(20)
+	if s := os.Getenv("BARLITRE_LONG"); s != "" {
+		n, err := strconv.Atoi(s)
+		check(t, err)
+		edits = n
+	}
+	if s := os.Getenv("BARLITRE_SEED"); s != "" { // to try others
+		n, err := strconv.ParseUint(s, 10, 64)
+		check(t, err)
+		seed = n
 	}
 	b := newBench(t, quick, Options{})
 	f, found := audit.Parse([]byte(drawnText), nil, "")
@@ -326,7 +222,7 @@ func TestRandomEdits(t *testing.T) {
 		t.Fatal(found)
 	}
 	check(t, b.begin(f, origin{}))
-	p := &player{T: t, d: b.Document, r: rand.New(rand.NewPCG(1, 20))}
+	p := &player{T: t, d: b.Document, r: rand.New(rand.NewPCG(1, seed))}
 	type state struct {
 		text   string
 		expect map[string]bool
