@@ -47,7 +47,7 @@ func TestEditsAreQuick(t *testing.T) {
 	before := *large(t)
 	for name, edit := range editsOfLarge {
 		best := time.Hour
-		for i := 0; i < 10; i++ {
+		for i := 0; i < 3 || i < 100 && best > 20*time.Millisecond; i++ { // more tries on a busy machine
 			f := before
 			start := time.Now()
 			if err := edit(&f); err != nil {
