@@ -161,7 +161,8 @@ func (f *File) SetTable(dutyName string, heads []string, columns [][]string) err
 	if err != nil {
 		return err
 	}
-	if len(heads) != len(columns) || !slices.Contains(heads, "t") && !slices.Contains(heads, "t [s]") {
+	isTime := func(head string) bool { name, _, _ := recording.SplitHead(head); return name == "t" }
+	if len(heads) != len(columns) || !slices.ContainsFunc(heads, isTime) {
 		return fmt.Errorf("duty %q: give as many columns as heads, the time t among them", dutyName)
 	}
 	points := child(d.duty(i), "points")

@@ -68,10 +68,13 @@ func (f *File) CopyCircuit(from, name string) error {
 		return fail(err)
 	}
 	last := len(f.Circuits)
-	for _, set := range [][2]string{{"name", encode(name, true)}, {"role", string(Proposal)}} {
-		if err := d.one(d.src.put(d.circuit(last), set[0], set[1])); err != nil {
-			return fail(err)
-		}
+	copied, err := d.src.put(d.circuit(last), "name", encode(name, true))
+	if err != nil {
+		return fail(err)
+	}
+	role, err := d.src.put(d.circuit(last), "role", string(Proposal))
+	if err := d.do([]splice{copied, role}, err); err != nil {
+		return fail(err)
 	}
 	return f.take(name, d, func(g *File) bool {
 		c := g.Circuit(name)
