@@ -36,9 +36,12 @@ type editor struct {
 	opt     figures.SheetOptions
 
 	selected map[string]bool
-	zoom     float64 // units of the toolkit a module
-	x, y     float64 // where the origin of the circuit's coordinates lies [units]
-	fitted   bool    // the user has not zoomed or panned since it was fitted
+	line     int           // the selected line, by its number on the sheet, −1 for none
+	pointer  fyne.Position // where it was last
+	inside   bool          // the pointer is over the sheet
+	zoom     float64       // units of the toolkit a module
+	x, y     float64       // where the origin of the circuit's coordinates lies [units]
+	fitted   bool          // the user has not zoomed or panned since it was fitted
 
 	gesture gesture
 	keys    struct{ shift, space, quiet bool } // held; quiet: the focus came without a key
@@ -67,7 +70,7 @@ const (
 )
 
 func newEditor(s *Station, index int) *editor {
-	e := &editor{s: s, index: index, circuit: -1, zoom: legendAt, selected: map[string]bool{}, fitted: true}
+	e := &editor{s: s, index: index, circuit: -1, line: -1, zoom: legendAt, selected: map[string]bool{}, fitted: true}
 	e.raster = canvas.NewRaster(e.paint)
 	e.raster.ScaleMode = canvas.ImageScalePixels
 	e.band, e.ring = canvas.NewRectangle(nil), canvas.NewRectangle(nil)
@@ -84,6 +87,7 @@ func newEditor(s *Station, index int) *editor {
 // show takes a circuit on the sheet.
 func (e *editor) show(at int, c *circuit.Circuit) {
 	e.cancel()
+	e.selectLine(-1)
 	other := c == nil || e.name != c.Name
 	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.name = at, c, nil, nil, nil, nil, nil, ""
 	if c == nil {
@@ -137,10 +141,21 @@ func (e *editor) selectOnly(block string) {
 		return
 	}
 	e.selected = map[string]bool{}
+	if block != "" {
+		e.selectLine(-1)
+	}
 	if block != "" && e.drawn != nil && e.drawn.Block(block) != nil {
 		e.selected[block] = true
 	}
 	e.opt.Selected = e.selected
+}
+
+// selectLine selects a line by its number on the sheet, or none with −1.
+func (e *editor) selectLine(net int) {
+	e.line, e.opt.Lines = net, nil
+	if net >= 0 {
+		e.opt.Lines = map[int]bool{net: true}
+	}
 }
 
 // ids lists the selected blocks, sorted.
@@ -284,6 +299,9 @@ func (e *editor) DumpText() string {
 	text := e.name
 	for _, id := range e.ids() {
 		text += " [" + id + "]"
+	}
+	if e.line >= 0 {
+		text += " line " + e.lineName(e.line)
 	}
 	return text
 }

@@ -13,6 +13,7 @@ type gesture struct {
 	kind    gestureKind
 	from    fyne.Position // where the button went down
 	block   string        // under it
+	net     int           // a line under it, −1 for none
 	moved   bool          // a drag has begun
 	ids     []string      // blocks that are dragged
 	dx, dy  float64       // by how much [M], whole
@@ -51,15 +52,16 @@ func (e *editor) MouseDown(ev *desktop.MouseEvent) {
 		e.keys.quiet = false
 	}
 	e.s.active = e.index
+	e.pointer, e.inside = ev.Position, true
 	e.hover.hide()
-	e.gesture = gesture{kind: pressed, from: ev.Position, shifted: ev.Modifier&fyne.KeyModifierShift != 0}
+	e.gesture = gesture{kind: pressed, net: -1, from: ev.Position, shifted: ev.Modifier&fyne.KeyModifierShift != 0}
 	switch {
 	case ev.Button == desktop.MouseButtonTertiary || e.keys.space:
 		e.gesture.kind = panning
 	case ev.Button != desktop.MouseButtonPrimary || e.sheet == nil:
 		e.gesture.kind = idle
 	default:
-		e.gesture.block, _, _ = e.hit(ev.Position)
+		e.gesture.block, e.gesture.net, _ = e.hit(ev.Position)
 	}
 }
 
@@ -110,6 +112,11 @@ func (e *editor) MouseUp(*desktop.MouseEvent) {
 		e.choose(g.block, g.shifted)
 	case !g.shifted:
 		e.choose("", false)
+		e.selectLine(g.net)
+		if g.net >= 0 {
+			e.s.ctx.Say("Line " + e.lineName(g.net) + ": Del removes it.")
+			e.redraw()
+		}
 	}
 }
 
@@ -212,6 +219,7 @@ func (e *editor) choose(block string, add bool) {
 			e.selected[block] = true
 		}
 	}
+	e.selectLine(-1)
 	e.opt.Selected = e.selected
 	if e.circuit >= 0 {
 		e.s.ctx.Select(e.circuit, block)
@@ -231,13 +239,17 @@ func (e *editor) MouseIn(ev *desktop.MouseEvent) { e.MouseMoved(ev) }
 
 // MouseMoved reads what lies under the pointer.
 func (e *editor) MouseMoved(ev *desktop.MouseEvent) {
+	e.pointer, e.inside = ev.Position, true
 	if e.gesture.kind == idle || e.gesture.kind == cancelled {
 		e.hover.moveTo(ev.Position)
 	}
 }
 
 // MouseOut ends the reading.
-func (e *editor) MouseOut() { e.hover.hide() }
+func (e *editor) MouseOut() {
+	e.inside = false
+	e.hover.hide()
+}
 
 // Cursor is a hand over blocks.
 func (e *editor) Cursor() desktop.Cursor {
