@@ -16,6 +16,7 @@ func (f *Frame) editItems() []*fyne.MenuItem {
 		m.Shortcut = key
 		out = append(out, m)
 	}
+	add("Add block (/)", nil, func() { f.act(station.AddBlock) })
 	clip := fyne.CurrentApp().Clipboard()
 	cut, copied, paste := &fyne.ShortcutCut{Clipboard: clip}, &fyne.ShortcutCopy{Clipboard: clip}, &fyne.ShortcutPaste{Clipboard: clip}
 	add("Cut", cut, func() { f.fieldOr(cut, station.Cut) })

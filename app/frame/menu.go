@@ -48,7 +48,7 @@ func (f *Frame) buildMenu() {
 	}
 	m := &f.menu
 	start := fyne.NewMenuItem("New", nil)
-	start.ChildMenu = fyne.NewMenu("")
+	start.ChildMenu = fyne.NewMenu("", item("Empty circuit", nil, func() { f.leave(f.openEmpty) }), fyne.NewMenuItemSeparator())
 	for _, s := range samples.Starters() {
 		start.ChildMenu.Items = append(start.ChildMenu.Items, item(s.Title, nil, func() { f.leave(func() { f.openStarter(s) }) }))
 	}

@@ -35,6 +35,8 @@ func (s *Station) Act(a station.Action) {
 		e.duplicate()
 	case station.Delete:
 		e.delete()
+	case station.AddBlock:
+		e.openShelf()
 	case station.Rotate:
 		e.turn("Rotated ", func(ids []string) error { return s.ctx.Doc().Rotate(e.name, 1, ids...) })
 	case station.Mirror:
@@ -157,6 +159,7 @@ func (e *editor) came(ids map[string]string, err error, said string) {
 func (e *editor) take(ids []string) {
 	e.fitted = false // the view stays while one draws
 	e.s.bringCircuits(false)
+	e.fitted = false
 	e.selected = map[string]bool{}
 	for _, id := range ids {
 		e.selected[id] = true

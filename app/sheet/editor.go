@@ -53,6 +53,7 @@ type editor struct {
 	band   *canvas.Rectangle
 	ring   *canvas.Rectangle
 	clip   *container.Clip
+	copied *widgets.Button // begins a proposal, on the empty second sheet
 }
 
 // blockBox is where a symbol of a block lies, in the circuit's coordinates [M].
@@ -79,6 +80,8 @@ func newEditor(s *Station, index int) *editor {
 	e.over = container.NewWithoutLayout(e.band, e.ring)
 	e.hover.build(e)
 	e.clip = container.NewClip(e.over)
+	e.copied = widgets.Name(widgets.NewButton("Copy as found to a proposal", e.copyAsFound), fmt.Sprintf("sheet.copy.%d", index))
+	e.copied.Hide()
 	e.ExtendBaseWidget(e)
 	widgets.Name(e, fmt.Sprintf("sheet.%d", index))
 	return e
@@ -329,6 +332,9 @@ func (r *editorRenderer) Layout(size fyne.Size) {
 	r.e.raster.Resize(size)
 	r.e.clip.Resize(size)
 	r.e.over.Resize(size)
+	m := r.e.copied.MinSize()
+	r.e.copied.Resize(m)
+	r.e.copied.Move(fyne.NewPos((size.Width-m.Width)/2, size.Height/2+50*widgets.Scale()))
 	r.e.ring.Move(fyne.NewPos(1, 1))
 	r.e.ring.Resize(size.SubtractWidthHeight(2, 2))
 }
@@ -336,5 +342,5 @@ func (r *editorRenderer) MinSize() fyne.Size { return r.e.MinSize() }
 func (r *editorRenderer) Refresh()           { r.e.raster.Refresh(); canvas.Refresh(r.e.over) }
 func (r *editorRenderer) Destroy()           {}
 func (r *editorRenderer) Objects() []fyne.CanvasObject {
-	return []fyne.CanvasObject{r.e.raster, r.e.clip}
+	return []fyne.CanvasObject{r.e.raster, r.e.clip, r.e.copied}
 }

@@ -76,6 +76,8 @@ func (e *editor) TypedRune(r rune) {
 	case 'w', 'W':
 		e.s.active = e.index
 		e.s.setWide(!e.s.wide)
+	case '/':
+		e.act(station.AddBlock)
 	case 'r', 'R':
 		e.act(station.Rotate)
 	case 'm', 'M':

@@ -46,11 +46,7 @@ var (
 
 // MouseDown begins a gesture.
 func (e *editor) MouseDown(ev *desktop.MouseEvent) {
-	if c := fyne.CurrentApp().Driver().CanvasForObject(e); c != nil {
-		e.keys.quiet = true
-		c.Focus(e)
-		e.keys.quiet = false
-	}
+	e.focus()
 	e.s.active = e.index
 	e.pointer, e.inside = ev.Position, true
 	e.hover.hide()
@@ -62,6 +58,15 @@ func (e *editor) MouseDown(ev *desktop.MouseEvent) {
 		e.gesture.kind = idle
 	default:
 		e.gesture.block, e.gesture.net, _ = e.hit(ev.Position)
+	}
+}
+
+// focus gives the sheet the keys, without the frame that they bring.
+func (e *editor) focus() {
+	if c := fyne.CurrentApp().Driver().CanvasForObject(e); c != nil {
+		e.keys.quiet = true
+		c.Focus(e)
+		e.keys.quiet = false
 	}
 }
 

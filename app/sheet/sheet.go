@@ -124,6 +124,7 @@ func (s *Station) bringCircuits(model bool) {
 		}
 		s.cards[i].reload()
 	}
+	show(s.editors[1].copied, left >= 0 && right < 0)
 	at, block := s.ctx.Selected()
 	for i, e := range s.editors {
 		if e.circuit >= 0 && e.circuit == at {
@@ -235,7 +236,7 @@ func (s *Station) revealSelected() {
 func (s *Station) takeFocus() {
 	w := s.ctx.Window()
 	e := s.editors[s.active]
-	if w == nil || w.Canvas() == nil || w.Canvas().Focused() != nil || !s.content.Visible() || e.sheet == nil {
+	if w == nil || w.Canvas() == nil || w.Canvas().Focused() != nil || !s.content.Visible() {
 		return
 	}
 	e.keys.quiet = true
