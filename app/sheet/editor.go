@@ -31,7 +31,8 @@ type editor struct {
 	sheet   *figures.Sheet    // plain, with labels laid for the results
 	labels  *audit.CircuitRun // the results
 	moved   *figures.Sheet    // while blocks are dragged, and until the file follows
-	boxes   []blockBox        // of sheet, in the circuit's coordinates
+	ports   []figures.SheetPort
+	boxes   []blockBox // of sheet, in the circuit's coordinates
 	state   *figures.SheetState
 	opt     figures.SheetOptions
 
@@ -46,6 +47,7 @@ type editor struct {
 	gesture gesture
 	keys    struct{ shift, space, quiet bool } // held; quiet: the focus came without a key
 	hover   hover
+	wire    wire
 
 	raster *canvas.Raster
 	pen    *pen.Raster
@@ -78,6 +80,7 @@ func newEditor(s *Station, index int) *editor {
 	e.band.Hide()
 	e.ring.Hide()
 	e.over = container.NewWithoutLayout(e.band, e.ring)
+	e.wire.build(e)
 	e.hover.build(e)
 	e.clip = container.NewClip(e.over)
 	e.copied = widgets.Name(widgets.NewButton("Copy as found to a proposal", e.copyAsFound), fmt.Sprintf("sheet.copy.%d", index))
@@ -90,16 +93,17 @@ func newEditor(s *Station, index int) *editor {
 // show takes a circuit on the sheet.
 func (e *editor) show(at int, c *circuit.Circuit) {
 	e.cancel()
+	e.hover.hide()
 	e.selectLine(-1)
 	other := c == nil || e.name != c.Name
-	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.name = at, c, nil, nil, nil, nil, nil, ""
+	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.ports, e.name = at, c, nil, nil, nil, nil, nil, nil, ""
 	if c == nil {
 		return
 	}
 	e.name, e.plain = c.Name, figures.NewSheet(c)
 	e.sheet = e.plain
 	e.label(e.s.solved(c.Name))
-	e.boxes = boxesOf(e.sheet)
+	e.boxes, e.ports = boxesOf(e.sheet), e.sheet.Ports()
 	for id := range e.selected {
 		if c.Block(id) == nil {
 			delete(e.selected, id)
@@ -281,15 +285,22 @@ func (e *editor) recolour() {
 	e.band.FillColor, e.band.StrokeColor, e.band.StrokeWidth = fill, pal.Gain, 1
 	e.ring.StrokeColor, e.ring.StrokeWidth, e.ring.CornerRadius = pal.Gain, 2, 4
 	e.hover.recolour()
+	e.wire.recolour()
 	canvas.Refresh(e.over)
 }
 
-// Parts tells scripts where the blocks are, in units of the widget.
+// Parts tells scripts where the blocks and their ports are, in units of the widget.
 func (e *editor) Parts() []widgets.Part {
 	var out []widgets.Part
 	for _, b := range e.boxes {
 		out = append(out, widgets.Part{Name: b.id, Text: e.blockText(b.id), Click: true,
 			X: e.x + b.x*e.zoom, Y: e.y + b.y*e.zoom, W: b.w * e.zoom, H: b.h * e.zoom})
+	}
+	const half = 3
+	for _, p := range e.ports {
+		at := e.onScreen(p)
+		out = append(out, widgets.Part{Name: p.String(), Text: pick(e.joined(p.PortRef), "connected", "free"), Click: true,
+			X: float64(at.X) - half, Y: float64(at.Y) - half, W: 2 * half, H: 2 * half})
 	}
 	return out
 }
