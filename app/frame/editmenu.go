@@ -28,6 +28,7 @@ func (f *Frame) editItems() []*fyne.MenuItem {
 	add("Delete (Del)", nil, func() { f.act(station.Delete) })
 	add("Rotate (R)", nil, func() { f.act(station.Rotate) })
 	add("Mirror (M)", nil, func() { f.act(station.Mirror) })
+	add("Rename (F2)", nil, func() { f.act(station.Rename) })
 	return out
 }
 

@@ -35,6 +35,8 @@ func (s *Station) Act(a station.Action) {
 		e.duplicate()
 	case station.Delete:
 		e.delete()
+	case station.Rename:
+		e.openRename()
 	case station.AddBlock:
 		e.openShelf()
 	case station.Rotate:

@@ -112,6 +112,8 @@ func (e *editor) TypedKey(k *fyne.KeyEvent) {
 		default:
 			widgets.PassKey(e, k)
 		}
+	case fyne.KeyF2:
+		e.act(station.Rename)
 	case fyne.KeyDelete, fyne.KeyBackspace:
 		e.act(station.Delete)
 	case fyne.KeyTab:

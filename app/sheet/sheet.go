@@ -287,6 +287,10 @@ Click a block to see and change its values on the right; type a value with any u
 
 Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
 
+Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it) to another port or to a line to connect them; what cannot be joined is refused, and the line below the window says why. The ports of a junction lie at its dot: select it to drag it.
+
+Del removes the selected block, and the lines on both sides become one; a click selects a line, and Del removes it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet. Ctrl+Z takes back each of these.
+
 Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
 
 The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time.`
