@@ -16,8 +16,11 @@ import (
 
 var _ station.Drawing = (*Station)(nil)
 
-// copyShift is how far a copy stands from what it was made of [M].
-const copyShift = 2.0
+// Steps that put a copy beside what it was made of [M].
+const (
+	copyShift = 2.0
+	copyClear = 6.0 // between the places of a copy and of another block
+)
 
 // Act does what the Edit menu, or a key on a sheet, asks of the selection.
 func (s *Station) Act(a station.Action) {
@@ -112,7 +115,7 @@ func (e *editor) paste() {
 	e.came(ids, err, "Pasted ")
 }
 
-// clear shifts pasted blocks on while one would stand exactly on another.
+// clear shifts pasted blocks on while one would stand on another.
 func (e *editor) clear(text string, shift [2]float64) [2]float64 {
 	part, _ := audit.Parse([]byte(text), nil, "")
 	for part != nil && len(part.Circuits) > 0 && slices.ContainsFunc(part.Circuits[0].Blocks, func(b circuit.Block) bool {
@@ -123,9 +126,11 @@ func (e *editor) clear(text string, shift [2]float64) [2]float64 {
 	return shift
 }
 
-// stands tells whether a block has its place at a point.
+// stands tells whether a block has its place about a point.
 func (e *editor) stands(x, y float64) bool {
-	return slices.ContainsFunc(e.drawn.Blocks, func(b circuit.Block) bool { return b.At != nil && b.At[0] == x && b.At[1] == y })
+	return slices.ContainsFunc(e.drawn.Blocks, func(b circuit.Block) bool {
+		return b.At != nil && math.Abs(b.At[0]-x) < copyClear && math.Abs(b.At[1]-y) < copyClear
+	})
 }
 
 func (e *editor) duplicate() {

@@ -8,7 +8,6 @@ import (
 	"fyne.io/fyne/v2"
 
 	"barlitre/app/station"
-	"barlitre/audit/figures"
 	"barlitre/circuit"
 )
 
@@ -165,22 +164,4 @@ func TestDeleteALine(t *testing.T) {
 		t.Errorf("line %d is selected", e.line)
 	}
 	b.undone(before, "Delete line")
-}
-
-// Every line of a circuit is drawn as part of just one line on the sheet.
-func TestLinesOfASheet(t *testing.T) {
-	b := newBench(t, press, window)
-	for _, c := range b.doc.File().Circuits {
-		s := figures.NewSheet(c.Circuit)
-		seen := map[int]int{}
-		for n := 0; n < s.Nets(); n++ {
-			lines, _ := s.Lines(n)
-			for _, i := range lines {
-				seen[i]++
-			}
-		}
-		if len(seen) != len(c.Lines) {
-			t.Errorf("%s: %d of %d lines are found", c.Name, len(seen), len(c.Lines))
-		}
-	}
 }

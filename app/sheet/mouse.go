@@ -86,6 +86,7 @@ func (e *editor) Dragged(ev *fyne.DragEvent) {
 		e.beginDrag()
 	}
 	g.moved = true
+	e.pointer = ev.Position
 	switch g.kind {
 	case panning:
 		e.panBy(float64(ev.Dragged.DX), float64(ev.Dragged.DY))

@@ -207,7 +207,7 @@ func (h *shelf) draw(p pen.Pen, w, _ float64) []widgets.Part {
 			pen.RoundRect(p, 2, y+1, w-4, shelfRow-2, 4, fill, pen.Stroke{W: 1, C: pal.Gain})
 		}
 		p.Text(pen.Pt{X: gap, Y: y + 15}, k.Title, 12.5, pal.Ink, pen.Left, false)
-		p.Text(pen.Pt{X: gap, Y: y + 30}, pen.Shorten(k.Text, 11, false, w-2*gap), 11, pal.Secondary, pen.Left, false)
+		p.Text(pen.Pt{X: gap, Y: y + 30}, pen.Shorten(strings.ReplaceAll(k.Text, "`", ""), 11, false, w-2*gap), 11, pal.Secondary, pen.Left, false)
 		parts = append(parts, widgets.Part{Name: k.Name, Text: k.Title, Y: y, W: w, H: shelfRow, Click: true})
 	}
 	if len(h.kinds) == 0 {
@@ -227,6 +227,9 @@ func newKeyed(key func(k fyne.KeyName) bool) *keyed {
 	e.ExtendBaseWidget(e)
 	return e
 }
+
+// Typing keeps undo in the entry.
+func (e *keyed) Typing() bool { return true }
 
 // TypedKey offers a key, then lets the entry have it.
 func (e *keyed) TypedKey(k *fyne.KeyEvent) {

@@ -64,12 +64,13 @@ func (s *Sheet) FreePlace(kind string, x, y float64) (px, py float64) {
 		sym = unknownSymbol()
 	}
 	const reach = 60
+	box := grown(sym.Box(), 1)
 	least := math.Inf(1)
 	px, py = x, y
 	for dy := -reach; dy <= reach; dy++ {
 		for dx := -reach; dx <= reach; dx++ {
 			d := math.Hypot(float64(dx), float64(dy))
-			if at := (drawing.Pt{X: x + float64(dx), Y: y + float64(dy)}); d < least && s.clear(grown(sym.Placed(at, 0, false).Box(), 1)) {
+			if at := (drawing.Pt{X: x + float64(dx), Y: y + float64(dy)}); d < least && s.clear(movedBox(box, at)) {
 				least, px, py = d, at.X, at.Y
 			}
 		}
