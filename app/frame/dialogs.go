@@ -77,6 +77,15 @@ func (f *Frame) openSample(name string) {
 	}
 }
 
+// openEmpty begins an audit with nothing drawn.
+func (f *Frame) openEmpty() {
+	if err := f.doc.OpenEmpty(); err != nil {
+		f.Fail(err)
+		return
+	}
+	f.Say("An empty circuit. Press / on the sheet to add a first block, then drag from port to port to connect.")
+}
+
 // openStarter opens a starter and says what to do with it.
 func (f *Frame) openStarter(s samples.Starter) {
 	if err := f.doc.OpenStarter(s.Name); err != nil {

@@ -48,7 +48,7 @@ func (f *Frame) buildMenu() {
 	}
 	m := &f.menu
 	start := fyne.NewMenuItem("New", nil)
-	start.ChildMenu = fyne.NewMenu("")
+	start.ChildMenu = fyne.NewMenu("", item("Empty circuit", nil, func() { f.leave(f.openEmpty) }), fyne.NewMenuItemSeparator())
 	for _, s := range samples.Starters() {
 		start.ChildMenu.Items = append(start.ChildMenu.Items, item(s.Title, nil, func() { f.leave(func() { f.openStarter(s) }) }))
 	}
@@ -66,7 +66,7 @@ func (f *Frame) buildMenu() {
 	file := fyne.NewMenu("File", start,
 		item("Open…", key(fyne.KeyO, 0), func() { f.leave(f.askOpen) }), m.recent, fyne.NewMenuItemSeparator(),
 		m.save, item("Save as…", key(fyne.KeyS, fyne.KeyModifierShift), func() { f.saveAs(nil) }), fyne.NewMenuItemSeparator(), quit)
-	edit := fyne.NewMenu("Edit", m.undo, m.redo)
+	edit := fyne.NewMenu("Edit", append([]*fyne.MenuItem{m.undo, m.redo, fyne.NewMenuItemSeparator()}, f.editItems()...)...)
 	job := fyne.NewMenu("Job")
 	for i, s := range f.stations {
 		job.Items = append(job.Items, item(s.Name(), key(stationKey(i), 0), func() { f.show(i) }))

@@ -5,14 +5,15 @@ import (
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
+	"barlitre/app/station"
 	"barlitre/app/widgets"
 )
 
 // bar holds the buttons above the sheets.
 type bar struct {
-	s                      *Station
-	fit, wide, heat, panel *widgets.Button
-	content                *fyne.Container
+	s                           *Station
+	add, fit, wide, heat, panel *widgets.Button
+	content                     *fyne.Container
 }
 
 func newBar(s *Station) *bar {
@@ -22,11 +23,13 @@ func newBar(s *Station) *bar {
 		w.Importance = widget.LowImportance
 		return widgets.Name(w, name)
 	}
+	b.add = button("sheet.add", func() { s.Act(station.AddBlock) })
 	b.fit = button("sheet.fit", s.fitAll)
 	b.wide = button("sheet.wide", func() { s.setWide(!s.wide) })
 	b.heat = button("sheet.heat", func() { s.setEnergy(!s.energy) })
 	b.panel = button("sheet.panel", s.togglePanel)
-	b.content = container.New(flow{}, b.fit, b.wide, b.heat, b.panel)
+	b.content = container.New(flow{}, b.add, b.fit, b.wide, b.heat, b.panel)
+	b.add.SetText("Add block (/)")
 	b.fit.SetText("Fit (F)")
 	b.wide.SetText("Show one sheet (W)")
 	b.heat.SetText("Show heat over the cycle")

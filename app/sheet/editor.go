@@ -31,18 +31,23 @@ type editor struct {
 	sheet   *figures.Sheet    // plain, with labels laid for the results
 	labels  *audit.CircuitRun // the results
 	moved   *figures.Sheet    // while blocks are dragged, and until the file follows
-	boxes   []blockBox        // of sheet, in the circuit's coordinates
+	ports   []figures.SheetPort
+	boxes   []blockBox // of sheet, in the circuit's coordinates
 	state   *figures.SheetState
 	opt     figures.SheetOptions
 
 	selected map[string]bool
-	zoom     float64 // units of the toolkit a module
-	x, y     float64 // where the origin of the circuit's coordinates lies [units]
-	fitted   bool    // the user has not zoomed or panned since it was fitted
+	line     int           // the selected line, by its number on the sheet, −1 for none
+	pointer  fyne.Position // where it was last
+	inside   bool          // the pointer is over the sheet
+	zoom     float64       // units of the toolkit a module
+	x, y     float64       // where the origin of the circuit's coordinates lies [units]
+	fitted   bool          // the user has not zoomed or panned since it was fitted
 
 	gesture gesture
 	keys    struct{ shift, space, quiet bool } // held; quiet: the focus came without a key
 	hover   hover
+	wire    wire
 
 	raster *canvas.Raster
 	pen    *pen.Raster
@@ -50,6 +55,7 @@ type editor struct {
 	band   *canvas.Rectangle
 	ring   *canvas.Rectangle
 	clip   *container.Clip
+	copied *widgets.Button // begins a proposal, on the empty second sheet
 }
 
 // blockBox is where a symbol of a block lies, in the circuit's coordinates [M].
@@ -67,15 +73,18 @@ const (
 )
 
 func newEditor(s *Station, index int) *editor {
-	e := &editor{s: s, index: index, circuit: -1, zoom: legendAt, selected: map[string]bool{}, fitted: true}
+	e := &editor{s: s, index: index, circuit: -1, line: -1, zoom: legendAt, selected: map[string]bool{}, fitted: true}
 	e.raster = canvas.NewRaster(e.paint)
 	e.raster.ScaleMode = canvas.ImageScalePixels
 	e.band, e.ring = canvas.NewRectangle(nil), canvas.NewRectangle(nil)
 	e.band.Hide()
 	e.ring.Hide()
 	e.over = container.NewWithoutLayout(e.band, e.ring)
+	e.wire.build(e)
 	e.hover.build(e)
 	e.clip = container.NewClip(e.over)
+	e.copied = widgets.Name(widgets.NewButton("Copy as found to a proposal", e.copyAsFound), fmt.Sprintf("sheet.copy.%d", index))
+	e.copied.Hide()
 	e.ExtendBaseWidget(e)
 	widgets.Name(e, fmt.Sprintf("sheet.%d", index))
 	return e
@@ -84,15 +93,17 @@ func newEditor(s *Station, index int) *editor {
 // show takes a circuit on the sheet.
 func (e *editor) show(at int, c *circuit.Circuit) {
 	e.cancel()
+	e.hover.hide()
+	e.selectLine(-1)
 	other := c == nil || e.name != c.Name
-	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.name = at, c, nil, nil, nil, nil, nil, ""
+	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.ports, e.name = at, c, nil, nil, nil, nil, nil, nil, ""
 	if c == nil {
 		return
 	}
 	e.name, e.plain = c.Name, figures.NewSheet(c)
 	e.sheet = e.plain
 	e.label(e.s.solved(c.Name))
-	e.boxes = boxesOf(e.sheet)
+	e.boxes, e.ports = boxesOf(e.sheet), e.sheet.Ports()
 	for id := range e.selected {
 		if c.Block(id) == nil {
 			delete(e.selected, id)
@@ -137,10 +148,21 @@ func (e *editor) selectOnly(block string) {
 		return
 	}
 	e.selected = map[string]bool{}
+	if block != "" {
+		e.selectLine(-1)
+	}
 	if block != "" && e.drawn != nil && e.drawn.Block(block) != nil {
 		e.selected[block] = true
 	}
 	e.opt.Selected = e.selected
+}
+
+// selectLine selects a line by its number on the sheet, or none with −1.
+func (e *editor) selectLine(net int) {
+	e.line, e.opt.Lines = net, nil
+	if net >= 0 {
+		e.opt.Lines = map[int]bool{net: true}
+	}
 }
 
 // ids lists the selected blocks, sorted.
@@ -263,15 +285,22 @@ func (e *editor) recolour() {
 	e.band.FillColor, e.band.StrokeColor, e.band.StrokeWidth = fill, pal.Gain, 1
 	e.ring.StrokeColor, e.ring.StrokeWidth, e.ring.CornerRadius = pal.Gain, 2, 4
 	e.hover.recolour()
+	e.wire.recolour()
 	canvas.Refresh(e.over)
 }
 
-// Parts tells scripts where the blocks are, in units of the widget.
+// Parts tells scripts where the blocks and their ports are, in units of the widget.
 func (e *editor) Parts() []widgets.Part {
 	var out []widgets.Part
 	for _, b := range e.boxes {
 		out = append(out, widgets.Part{Name: b.id, Text: e.blockText(b.id), Click: true,
 			X: e.x + b.x*e.zoom, Y: e.y + b.y*e.zoom, W: b.w * e.zoom, H: b.h * e.zoom})
+	}
+	const half = 3
+	for _, p := range e.ports {
+		at := e.onScreen(p)
+		out = append(out, widgets.Part{Name: p.String(), Text: pick(e.joined(p.PortRef), "connected", "free"), Click: true,
+			X: float64(at.X) - half, Y: float64(at.Y) - half, W: 2 * half, H: 2 * half})
 	}
 	return out
 }
@@ -284,6 +313,9 @@ func (e *editor) DumpText() string {
 	text := e.name
 	for _, id := range e.ids() {
 		text += " [" + id + "]"
+	}
+	if e.line >= 0 {
+		text += " line " + e.lineName(e.line)
 	}
 	return text
 }
@@ -311,6 +343,9 @@ func (r *editorRenderer) Layout(size fyne.Size) {
 	r.e.raster.Resize(size)
 	r.e.clip.Resize(size)
 	r.e.over.Resize(size)
+	m := r.e.copied.MinSize()
+	r.e.copied.Resize(m)
+	r.e.copied.Move(fyne.NewPos((size.Width-m.Width)/2, size.Height/2+50*widgets.Scale()))
 	r.e.ring.Move(fyne.NewPos(1, 1))
 	r.e.ring.Resize(size.SubtractWidthHeight(2, 2))
 }
@@ -318,5 +353,5 @@ func (r *editorRenderer) MinSize() fyne.Size { return r.e.MinSize() }
 func (r *editorRenderer) Refresh()           { r.e.raster.Refresh(); canvas.Refresh(r.e.over) }
 func (r *editorRenderer) Destroy()           {}
 func (r *editorRenderer) Objects() []fyne.CanvasObject {
-	return []fyne.CanvasObject{r.e.raster, r.e.clip}
+	return []fyne.CanvasObject{r.e.raster, r.e.clip, r.e.copied}
 }

@@ -8,6 +8,7 @@ import (
 	"fyne.io/fyne/v2/canvas"
 
 	"barlitre/app/widgets"
+	"barlitre/audit/figures"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -18,6 +19,7 @@ type hover struct {
 	e      *editor
 	block  string
 	net    int
+	port   *figures.SheetPort // under the pointer, before block and line
 	on     bool
 	at     fyne.Position
 	paper  *canvas.Rectangle
@@ -54,13 +56,16 @@ func (h *hover) recolour() {
 // moveTo reads what lies at a place.
 func (h *hover) moveTo(p fyne.Position) {
 	block, net, ok := h.e.hit(p)
-	if !ok {
+	port := h.e.portAt(p)
+	if !ok && port == nil {
 		h.hide()
 		return
 	}
 	h.at = p
-	if !h.on || block != h.block || net != h.net {
-		h.on, h.block, h.net = true, block, net
+	if !h.on || block != h.block || net != h.net || port != h.port {
+		h.on, h.block, h.net, h.port = true, block, net, port
+		h.e.wire.ring(0, port)
+		h.e.wire.mark(block)
 		h.fill()
 	}
 	h.place()
@@ -76,7 +81,9 @@ func (h *hover) stale() {
 // fill writes the label.
 func (h *hover) fill() {
 	var text []string
-	if h.block != "" {
+	if h.port != nil {
+		text = h.e.portLines(h.port.PortRef)
+	} else if h.block != "" {
 		text = h.e.blockLines(h.block)
 	} else {
 		text = h.e.lineLines(h.net)
@@ -137,7 +144,8 @@ func (h *hover) hide() {
 	if !h.on {
 		return
 	}
-	h.on, h.block, h.net = false, "", -1
+	h.on, h.block, h.net, h.port = false, "", -1, nil
+	h.e.wire.hide()
 	h.paper.Hide()
 	for _, t := range h.lines {
 		t.Hide()

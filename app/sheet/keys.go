@@ -7,6 +7,7 @@ import (
 	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/driver/desktop"
 
+	"barlitre/app/station"
 	"barlitre/app/widgets"
 )
 
@@ -75,11 +76,23 @@ func (e *editor) TypedRune(r rune) {
 	case 'w', 'W':
 		e.s.active = e.index
 		e.s.setWide(!e.s.wide)
+	case '/':
+		e.act(station.AddBlock)
+	case 'r', 'R':
+		e.act(station.Rotate)
+	case 'm', 'M':
+		e.act(station.Mirror)
 	case '+':
 		e.zoomMiddle(zoomStep)
 	case '-':
 		e.zoomMiddle(1 / zoomStep)
 	}
+}
+
+// act does on this sheet what the Edit menu does on the one at hand.
+func (e *editor) act(a station.Action) {
+	e.s.active = e.index
+	e.s.Act(a)
 }
 
 func (e *editor) zoomMiddle(factor float64) {
@@ -94,11 +107,15 @@ func (e *editor) TypedKey(k *fyne.KeyEvent) {
 	case fyne.KeyEscape:
 		switch {
 		case e.cancel():
-		case len(e.selected) > 0:
+		case len(e.selected) > 0 || e.line >= 0:
 			e.choose("", false)
 		default:
 			widgets.PassKey(e, k)
 		}
+	case fyne.KeyF2:
+		e.act(station.Rename)
+	case fyne.KeyDelete, fyne.KeyBackspace:
+		e.act(station.Delete)
 	case fyne.KeyTab:
 		e.nextBlock()
 	case fyne.KeyReturn, fyne.KeyEnter:

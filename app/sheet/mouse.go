@@ -6,18 +6,23 @@ import (
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/driver/desktop"
+
+	"barlitre/audit/figures"
 )
 
 // gesture is what the pressed button is doing.
 type gesture struct {
 	kind    gestureKind
-	from    fyne.Position // where the button went down
-	block   string        // under it
-	moved   bool          // a drag has begun
-	ids     []string      // blocks that are dragged
-	dx, dy  float64       // by how much [M], whole
-	laid    time.Duration // what laying the lines anew took last
-	shifted bool          // Shift was held
+	from    fyne.Position      // where the button went down
+	block   string             // under it
+	net     int                // a line under it, −1 for none
+	moved   bool               // a drag has begun
+	port    *figures.SheetPort // under it, nil for none
+	at      fyne.Position      // where a line is dragged to
+	ids     []string           // blocks that are dragged
+	dx, dy  float64            // by how much [M], whole
+	laid    time.Duration      // what laying the lines anew took last
+	shifted bool               // Shift was held
 }
 
 type gestureKind int
@@ -28,6 +33,7 @@ const (
 	panning               // the picture moves
 	banding               // a box selects
 	dragging              // blocks move
+	wiring                // a line is drawn from a port
 	cancelled             // by Escape; the rest of the drag does nothing
 )
 
@@ -45,21 +51,31 @@ var (
 
 // MouseDown begins a gesture.
 func (e *editor) MouseDown(ev *desktop.MouseEvent) {
-	if c := fyne.CurrentApp().Driver().CanvasForObject(e); c != nil {
-		e.keys.quiet = true
-		c.Focus(e)
-		e.keys.quiet = false
-	}
+	e.focus()
 	e.s.active = e.index
+	e.pointer, e.inside = ev.Position, true
 	e.hover.hide()
-	e.gesture = gesture{kind: pressed, from: ev.Position, shifted: ev.Modifier&fyne.KeyModifierShift != 0}
+	e.wire.hide()
+	e.gesture = gesture{kind: pressed, net: -1, from: ev.Position, shifted: ev.Modifier&fyne.KeyModifierShift != 0}
 	switch {
 	case ev.Button == desktop.MouseButtonTertiary || e.keys.space:
 		e.gesture.kind = panning
 	case ev.Button != desktop.MouseButtonPrimary || e.sheet == nil:
 		e.gesture.kind = idle
 	default:
-		e.gesture.block, _, _ = e.hit(ev.Position)
+		e.gesture.block, e.gesture.net, _ = e.hit(ev.Position)
+		if port := e.portAt(ev.Position); port != nil && !e.gesture.shifted {
+			e.gesture.port = port
+		}
+	}
+}
+
+// focus gives the sheet the keys, without the frame that they bring.
+func (e *editor) focus() {
+	if c := fyne.CurrentApp().Driver().CanvasForObject(e); c != nil {
+		e.keys.quiet = true
+		c.Focus(e)
+		e.keys.quiet = false
 	}
 }
 
@@ -70,6 +86,7 @@ func (e *editor) Dragged(ev *fyne.DragEvent) {
 		e.beginDrag()
 	}
 	g.moved = true
+	e.pointer = ev.Position
 	switch g.kind {
 	case panning:
 		e.panBy(float64(ev.Dragged.DX), float64(ev.Dragged.DY))
@@ -77,13 +94,19 @@ func (e *editor) Dragged(ev *fyne.DragEvent) {
 		e.drawBand(ev.Position)
 	case dragging:
 		e.dragTo(ev.Position)
+	case wiring:
+		e.wireTo(ev.Position)
 	}
 }
 
-// beginDrag decides what a drag with the first button is: on a block it moves the
-// selection, on the ground it selects with a box.
+// beginDrag decides what a drag with the first button is: on a port it draws a line, on
+// a block it moves the selection, on the ground it selects with a box.
 func (e *editor) beginDrag() {
 	g := &e.gesture
+	if g.port != nil {
+		g.kind = wiring
+		return
+	}
 	if g.block == "" {
 		g.kind = banding
 		return
@@ -108,8 +131,15 @@ func (e *editor) MouseUp(*desktop.MouseEvent) {
 	switch {
 	case g.block != "":
 		e.choose(g.block, g.shifted)
+	case g.port != nil && g.net < 0:
+		e.choose(g.port.Block, false)
 	case !g.shifted:
 		e.choose("", false)
+		e.selectLine(g.net)
+		if g.net >= 0 {
+			e.s.ctx.Say("Line " + e.lineName(g.net) + ": Del removes it.")
+			e.redraw()
+		}
 	}
 }
 
@@ -123,6 +153,8 @@ func (e *editor) DragEnd() {
 		e.endBand(g)
 	case dragging:
 		e.s.move(e, g.ids, g.dx, g.dy)
+	case wiring:
+		e.endWire(g)
 	}
 }
 
@@ -135,6 +167,7 @@ func (e *editor) cancel() bool {
 	e.gesture = gesture{kind: cancelled, moved: e.gesture.moved}
 	e.moved = nil
 	e.hover.clearGhosts()
+	e.wire.hide()
 	e.band.Hide()
 	e.redraw()
 	return true
@@ -212,6 +245,7 @@ func (e *editor) choose(block string, add bool) {
 			e.selected[block] = true
 		}
 	}
+	e.selectLine(-1)
 	e.opt.Selected = e.selected
 	if e.circuit >= 0 {
 		e.s.ctx.Select(e.circuit, block)
@@ -231,18 +265,22 @@ func (e *editor) MouseIn(ev *desktop.MouseEvent) { e.MouseMoved(ev) }
 
 // MouseMoved reads what lies under the pointer.
 func (e *editor) MouseMoved(ev *desktop.MouseEvent) {
+	e.pointer, e.inside = ev.Position, true
 	if e.gesture.kind == idle || e.gesture.kind == cancelled {
 		e.hover.moveTo(ev.Position)
 	}
 }
 
 // MouseOut ends the reading.
-func (e *editor) MouseOut() { e.hover.hide() }
+func (e *editor) MouseOut() {
+	e.inside = false
+	e.hover.hide()
+}
 
 // Cursor is a hand over blocks.
 func (e *editor) Cursor() desktop.Cursor {
 	switch {
-	case e.gesture.kind == panning || e.keys.space:
+	case e.gesture.kind == panning || e.keys.space || e.hover.port != nil:
 		return desktop.CrosshairCursor
 	case e.hover.block != "":
 		return desktop.PointerCursor

@@ -88,12 +88,15 @@ func (e *editor) drawLegend(p pen.Pen, w, h float64) {
 // drawEmpty says what belongs on the sheet and how to get it there.
 func (e *editor) drawEmpty(p pen.Pen, w, h float64) {
 	pal, k := e.s.ctx.Palette(), float64(widgets.Scale())
-	head, lines := 2, []string{"A proposal stands here,", "beside the circuit as found.", "Add a circuit with role: proposal", "to the audit file."}
+	head, lines := 2, []string{"A proposal stands here,", "beside the circuit as found.", "Copy the circuit and change it,", "or press / for a first block."}
 	if e.index == 0 {
 		head = 1
-		lines = []string{"No circuit in this audit yet.", "File > New has one of each kind to begin with;", "File > Open takes an audit file."}
+		lines = []string{"No circuit in this audit yet.", "Press / to add a first block, or begin with", "one of the circuits in File > New."}
 	}
 	y := h/2 - 20*k
+	if e.copied.Visible() {
+		y -= 20 * k
+	}
 	for i, l := range lines {
 		p.Text(pen.Pt{X: w / 2, Y: y}, l, 12.5*k, map[bool]color.NRGBA{true: pal.Ink, false: pal.Secondary}[i < head], pen.Center, false)
 		y += 19 * k

@@ -40,6 +40,11 @@ type panel struct {
 func newPanel(s *Station) *panel {
 	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}, expanded: map[circuit.Section]bool{}}
 	p.head = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), p.drawHead), "sheet.title")
+	p.head.Tapped = func(widgets.Part, float64, float64) {
+		if _, b := p.at(); b != nil {
+			s.Act(station.Rename)
+		}
+	}
 	p.live = newLive(p)
 	p.newParts()
 	p.list = container.New(tight{})
@@ -249,11 +254,12 @@ func (p *panel) showParameter(key string) {
 func (p *panel) drawHead(g pen.Pen, w, h float64) []widgets.Part {
 	pal := p.s.ctx.Palette()
 	title, sub := p.titles()
+	_, b := p.at()
 	const left = 8.0
 	short := pen.Shorten(title, 14, true, w-2*left)
 	g.Text(pen.Pt{X: left, Y: 18}, short, 14, pal.Ink, pen.Left, true)
 	g.Text(pen.Pt{X: left, Y: 34}, pen.Shorten(sub, 11, false, w-2*left), 11, pal.Secondary, pen.Left, false)
-	return []widgets.Part{{Name: "block", Text: title + ", " + sub, W: w, H: h}}
+	return []widgets.Part{{Name: "block", Text: title + ", " + sub, W: w, H: h, Click: b != nil}}
 }
 
 // titles are what stands on top of the panel.
@@ -269,7 +275,7 @@ func (p *panel) titles() (title, sub string) {
 	if k := circuit.KindNamed(b.Kind); k != nil {
 		sub = lower(k.Title)
 	}
-	return b.ID, sub + " · " + c.Name
+	return b.ID, sub + " · " + c.Name + " · F2 renames"
 }
 
 func (p *panel) recolour() { paper(p.paper, p.s.ctx.Palette()) }

@@ -124,6 +124,7 @@ func (s *Station) bringCircuits(model bool) {
 		}
 		s.cards[i].reload()
 	}
+	show(s.editors[1].copied, left >= 0 && right < 0)
 	at, block := s.ctx.Selected()
 	for i, e := range s.editors {
 		if e.circuit >= 0 && e.circuit == at {
@@ -235,7 +236,7 @@ func (s *Station) revealSelected() {
 func (s *Station) takeFocus() {
 	w := s.ctx.Window()
 	e := s.editors[s.active]
-	if w == nil || w.Canvas() == nil || w.Canvas().Focused() != nil || !s.content.Visible() || e.sheet == nil {
+	if w == nil || w.Canvas() == nil || w.Canvas().Focused() != nil || !s.content.Visible() {
 		return
 	}
 	e.keys.quiet = true
@@ -285,6 +286,10 @@ The tint of a line is its pressure, its width the flow; the amber disc at a bloc
 Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. The values of machines and drives stand in sections; “more” on a section shows those left at their defaults, “more” on a value lets it be dropped, so that its default holds again. Below stand what it does now, what the duty asks of it against what is permitted, its year beside that of the same machine in the other circuit, and pictures; the words on top lead there. With nothing selected the panel has the oil.
 
 Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
+
+Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it) to another port or to a line to connect them; what cannot be joined is refused, and the line below the window says why. The ports of a junction lie at its dot: select it to drag it.
+
+Del removes the selected block, and the lines on both sides become one; a click selects a line, and Del removes it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet. Ctrl+Z takes back each of these.
 
 Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
 

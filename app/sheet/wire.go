@@ -1,0 +1,199 @@
+package sheet
+
+import (
+	"math"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/canvas"
+
+	"barlitre/app/widgets"
+	"barlitre/audit/figures"
+	"barlitre/circuit"
+)
+
+// wire shows what a line is drawn with: a ring round the port under the pointer, dots on
+// the ports of the block there, and a line from port to pointer while it is dragged.
+type wire struct {
+	e     *editor
+	line  *canvas.Line
+	rings [2]*canvas.Circle // at the port that it begins at, and the one it would end at
+	dots  []*canvas.Circle
+}
+
+// Sizes of rings and dots [units at scale 1].
+const (
+	portRing = 6
+	portDot  = 2.5
+)
+
+func (w *wire) build(e *editor) {
+	w.e, w.line = e, canvas.NewLine(nil)
+	w.line.Hide()
+	e.over.Add(w.line)
+	for i := range w.rings {
+		w.rings[i] = canvas.NewCircle(nil)
+		w.rings[i].Hide()
+		e.over.Add(w.rings[i])
+	}
+}
+
+func (w *wire) recolour() {
+	pal := w.e.s.ctx.Palette()
+	w.line.StrokeColor, w.line.StrokeWidth = pal.Gain, 2
+	for _, r := range w.rings {
+		r.StrokeColor, r.StrokeWidth = pal.Gain, 2
+	}
+	for _, d := range w.dots {
+		d.FillColor = pal.Gain
+	}
+}
+
+// hide takes all of it off the sheet.
+func (w *wire) hide() {
+	w.line.Hide()
+	for _, r := range w.rings {
+		r.Hide()
+	}
+	w.mark("")
+}
+
+// mark puts a dot on each port of a block, "" for none.
+func (w *wire) mark(block string) {
+	n := 0
+	for _, p := range w.e.ports {
+		if block == "" || p.Block != block {
+			continue
+		}
+		if n == len(w.dots) {
+			d := canvas.NewCircle(w.e.s.ctx.Palette().Gain)
+			w.dots = append(w.dots, d)
+			w.e.over.Add(d)
+		}
+		w.round(w.dots[n], p, portDot)
+		n++
+	}
+	for _, d := range w.dots[n:] {
+		d.Hide()
+	}
+}
+
+// round shows a circle about a port.
+func (w *wire) round(c *canvas.Circle, p figures.SheetPort, radius float32) {
+	radius *= widgets.Scale()
+	at := w.e.onScreen(p)
+	c.Move(at.SubtractXY(radius, radius))
+	c.Resize(fyne.NewSquareSize(2 * radius))
+	c.Show()
+}
+
+// ring shows a ring about a port, or none with nil.
+func (w *wire) ring(i int, p *figures.SheetPort) {
+	if p == nil {
+		w.rings[i].Hide()
+		return
+	}
+	w.round(w.rings[i], *p, portRing)
+}
+
+// onScreen is where a port is, in units of the widget.
+func (e *editor) onScreen(p figures.SheetPort) fyne.Position {
+	return fyne.NewPos(float32(e.x+p.X*e.zoom), float32(e.y+p.Y*e.zoom))
+}
+
+// portAt finds the port nearest to a place on screen, nil when none is near. The ports
+// of a junction are all at its dot: it can be dragged once it is selected.
+func (e *editor) portAt(at fyne.Position) *figures.SheetPort {
+	if _, h := e.room(); e.sheet == nil || float64(at.Y) > h {
+		return nil
+	}
+	x, y := e.at(at)
+	least := math.Max(0.7, math.Min(1.2, portRing/e.zoom)) // [M]
+	var found *figures.SheetPort
+	for i := range e.ports {
+		p := &e.ports[i]
+		d := math.Hypot(p.X-x, p.Y-y)
+		if b := e.drawn.Block(p.Block); d < least && b != nil && !(b.Kind == "junction" && e.selected[p.Block]) {
+			least, found = d, p
+		}
+	}
+	return found
+}
+
+// portLines tells of a port under the pointer.
+func (e *editor) portLines(p circuit.PortRef) []string {
+	out := []string{p.String()}
+	if b := e.drawn.Block(p.Block); b != nil {
+		if k := circuit.KindNamed(b.Kind); k != nil && k.Port(p.Port) != nil {
+			out[0] += " · " + k.Port(p.Port).Text
+		}
+	}
+	if e.joined(p) {
+		return append(out, e.lineLines(e.netOf(p))...)
+	}
+	return append(out, "not connected; drag to a port or a line")
+}
+
+// netOf returns the drawn line that a port stands on, −1 for none.
+func (e *editor) netOf(p circuit.PortRef) int {
+	for n := 0; n < e.sheet.Nets(); n++ {
+		for _, q := range e.sheet.Net(n) {
+			if q == p {
+				return n
+			}
+		}
+	}
+	return -1
+}
+
+// joined tells whether a port stands on a line.
+func (e *editor) joined(p circuit.PortRef) bool { return e.netOf(p) >= 0 }
+
+// wireTo draws the line from the port that it began at to the pointer, and shows the
+// port that it would end at.
+func (e *editor) wireTo(at fyne.Position) {
+	g := &e.gesture
+	g.at = at
+	w := &e.wire
+	end := e.portAt(at)
+	if end != nil && end.PortRef == g.port.PortRef {
+		end = nil
+	}
+	w.line.Position1, w.line.Position2 = e.onScreen(*g.port), at
+	if end != nil {
+		w.line.Position2 = e.onScreen(*end)
+	}
+	w.line.Show()
+	w.ring(0, g.port)
+	w.ring(1, end)
+	block, _, _ := e.hit(at)
+	w.mark(block)
+	canvas.Refresh(e.over)
+}
+
+// endWire connects the port that a line began at with what is under the pointer.
+func (e *editor) endWire(g gesture) {
+	e.wire.hide()
+	canvas.Refresh(e.over)
+	from, doc := g.port.String(), e.s.ctx.Doc()
+	end := e.portAt(g.at)
+	_, net, _ := e.hit(g.at)
+	to, err := "", error(nil)
+	switch {
+	case end != nil && end.PortRef == g.port.PortRef:
+		return
+	case end != nil:
+		to, err = end.String(), doc.Connect(e.name, from, end.String())
+	case net >= 0:
+		lines, _ := e.sheet.Lines(net)
+		to, err = "the line "+e.lineName(net), doc.ConnectLine(e.name, from, lines[0])
+	default:
+		e.s.ctx.Say("Nothing connected: release on a port or on a line to connect " + from + ".")
+		return
+	}
+	if err != nil {
+		e.s.refused(err)
+		return
+	}
+	e.fitted = false
+	e.s.ctx.Say("Connected " + from + " and " + to + ". Ctrl+Z takes it back.")
+}
