@@ -48,7 +48,7 @@ func (s *Solution) MachineMap(c *CircuitRun, block string) *MachineMap {
 	drives := 0.0
 	m.States = c.states(block)
 	for _, x := range m.States {
-		drives += x.Energy * sign(x.E*x.W*x.DP)
+		drives += x.Energy * machines.Sign(x.E*x.W*x.DP)
 	}
 	m.Motor = drives < 0
 	return m
@@ -138,16 +138,6 @@ func limitOf(b *circuit.Block, key string) float64 {
 		return v.SI
 	}
 	return math.NaN()
-}
-
-func sign(x float64) float64 {
-	switch {
-	case x > 0:
-		return 1
-	case x < 0:
-		return -1
-	}
-	return 0
 }
 
 // usual speeds and pressures where neither a limit nor a duty gives the ends of a map.

@@ -21,7 +21,7 @@ var accumulatorKind = &Kind{
 		{Key: "thermal_time_constant", Title: "Thermal time constant", Symbol: "τ", Dim: units.Time, Above: true, Max: 1e6, Text: "in which the gas comes to within 37 % of the temperature of its wall; takes the place of the exponent. Bladders of some litres have some ten seconds, large pistons minutes (from memory)"},
 		{Key: "gas_temperature", Title: "Gas temperature", Symbol: "θg", Dim: units.Temperature, Default: "40 C", Origin: Assumed, Source: "between oil and air, common practice", Min: 230, Max: 400, Text: "corrects the pre-charge; with a thermal time constant that of the wall"},
 		{Key: "start_pressure", Title: "Pressure at the start", Symbol: "p1", Dim: units.Pressure, Max: 1000e5, Text: "where a single recording begins; without it the accumulator starts empty"},
-		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
+		ratedPressure,
 	},
 	Losses: []LossKind{{"gas heat", ToAir, "P = Q·(1 − θw/θ), Q = m·cv·(θ − θw)/τ; with a thermal time constant"}},
 	Equations: []Equation{

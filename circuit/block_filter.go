@@ -10,17 +10,11 @@ import (
 var filterKind = &Kind{
 	Name: kindFilter, Title: "Filter", Group: "lines and conditioning",
 	Letter: "F", Typical: []Setting{{"nominal_flow", "100 L/min"}},
-	Text: "Return or pressure filter, with a bypass where one is given.",
-	Ports: []Port{
-		{Name: "A", Type: Oil, Text: "dirty side"},
-		{Name: "B", Type: Oil, Text: "clean side"},
-	},
-	Params: []Param{
-		{Key: "nominal_flow", Title: "Nominal flow", Symbol: "qN", Dim: units.Flow, Need: true, Above: true, Max: 10, Text: "at the nominal drop"},
-		{Key: "nominal_drop", Title: "Nominal drop", Symbol: "ΔpN", Dim: units.Pressure, Default: "0.7 bar", Origin: Assumed, Source: "half-used element, common practice 0.3 to 3.5 bar", Max: 50e5, Text: "at the nominal flow"},
-		{Key: "linear_share", Title: "Laminar share", Symbol: "kl", Dim: units.Ratio, Default: "0.5", Origin: Assumed, Source: "element laminar, housing turbulent; common practice", Max: 1, Text: "part of the nominal drop that grows with flow, the rest with its square"},
-		{Key: "bypass", Title: "Bypass opens at", Symbol: "pb", Dim: units.Pressure, Above: true, Max: 50e5, Text: "without it there is no bypass"},
-	},
+	Text:  "Return or pressure filter, with a bypass where one is given.",
+	Ports: strainerPorts("dirty side", "clean side"),
+	Params: strainerParams(
+		Param{Default: "0.7 bar", Source: "half-used element, common practice 0.3 to 3.5 bar", Text: "at the nominal flow"},
+		Param{Default: "0.5", Source: "element laminar, housing turbulent; common practice"}),
 	Losses:    []LossKind{{"filter", ToOil, "P = Δp·q"}},
 	Equations: []Equation{{"Δp = ΔpN·(kl·q/qN + (1 − kl)·(q/qN)²), at most pb with a bypass", "element and housing losses, common form"}},
 	Symbol: func(b *Block) string {
@@ -30,6 +24,22 @@ var filterKind = &Kind{
 		return "filter"
 	},
 	build: func(k *compiler, b *Block) model { return k.strainer(b, "filter") },
+}
+
+// strainerPorts names the sides of what strains or cools oil.
+func strainerPorts(in, out string) []Port {
+	return []Port{{Name: "A", Type: Oil, Text: in}, {Name: "B", Type: Oil, Text: out}}
+}
+
+// strainerParams are the parameters of a filter or cooler; drop and share say what its nominal drop
+// and laminar share are by default, and why.
+func strainerParams(drop, share Param) []Param {
+	return []Param{
+		{Key: "nominal_flow", Title: "Nominal flow", Symbol: "qN", Dim: units.Flow, Need: true, Above: true, Max: 10, Text: "at the nominal drop"},
+		{Key: "nominal_drop", Title: "Nominal drop", Symbol: "ΔpN", Dim: units.Pressure, Default: drop.Default, Origin: Assumed, Source: drop.Source, Max: 50e5, Text: drop.Text},
+		{Key: "linear_share", Title: "Laminar share", Symbol: "kl", Dim: units.Ratio, Default: share.Default, Origin: Assumed, Source: share.Source, Max: 1, Text: "part of the nominal drop that grows with flow, the rest with its square"},
+		{Key: "bypass", Title: "Bypass opens at", Symbol: "pb", Dim: units.Pressure, Above: true, Max: 50e5, Text: "without it there is no bypass"},
+	}
 }
 
 // strainer wires a filter, or a cooler, which resists in the same way.

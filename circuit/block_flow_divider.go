@@ -21,7 +21,7 @@ var flowDividerKind = &Kind{
 		{Key: "friction", Title: "Pressure friction", Symbol: "Cf", Dim: units.Ratio, Default: "0.05", Origin: Assumed, Source: gearSection, Max: 0.9, Text: "share of the ideal torque of each section"},
 		{Key: "viscous", Title: "Viscous friction", Symbol: "Cv", Dim: units.Ratio, Default: "1.8e5", Origin: Assumed, Source: gearSection, Max: 1e8, Text: "torque by displacement, viscosity and speed"},
 		{Key: "drag", Title: "Constant friction", Symbol: "Tc", Dim: units.Torque, Default: "1 N m", Origin: Assumed, Source: "seals and bearings, common practice", Max: 1e4, Text: "of both sections together"},
-		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
+		ratedPressure,
 		{Key: "max_speed", Title: "Highest speed", Symbol: "n2", Dim: units.AngularSpeed, Above: true, Max: 2000, Text: "highest permitted speed"},
 	},
 	Losses: []LossKind{

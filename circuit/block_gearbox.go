@@ -3,6 +3,7 @@ package circuit
 import (
 	"math"
 
+	"barlitre/machines"
 	"barlitre/machines/units"
 )
 
@@ -194,7 +195,7 @@ func (m *gearboxModel) eval(e *eval) {
 		return // the first shaft has its speed; torques are booked
 	}
 	u, sg := e.val(m.j.u), e.val(m.sigma)
-	lost, slope := m.g*math.Abs(u), m.g*sign(u)
+	lost, slope := m.g*math.Abs(u), m.g*machines.Sign(u)
 	if m.j.outward {
 		// far: Σ T + u = 0 with u = −T2; near: Σ T + T1 = 0.
 		e.add(m.j.u, u)
@@ -218,7 +219,7 @@ func (m *gearboxModel) book(*booking) {} // after all machines: bookTorque
 // hands the torque on to the near one.
 func (m *gearboxModel) bookTorque(k *booking) {
 	w := k.val(m.speed) * m.w1Per
-	dir := sign(w)
+	dir := machines.Sign(w)
 	var T2 float64
 	switch {
 	case m.free:
@@ -230,7 +231,7 @@ func (m *gearboxModel) bookTorque(k *booking) {
 		T2 = k.shaft[m.out].torque
 	default:
 		T1 := -k.shaft[m.in].torque
-		T2 = T1 * m.i / (1 + m.g*dir*sign(T1))
+		T2 = T1 * m.i / (1 + m.g*dir*machines.Sign(T1))
 	}
 	lost := math.Abs(T2) / m.i * m.g * dir
 	T1 := T2/m.i + lost

@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"barlitre/circuit/duty"
+	"barlitre/machines"
 	"barlitre/machines/units"
 )
 
@@ -107,7 +108,7 @@ func (m *motorModel) begin(s *step) {
 		}
 	case a.given == duty.MotionCommand:
 		s.set(m.speed, a.demand*m.ratio/m.wPer)
-		s.set(m.sigma, sign(a.demand))
+		s.set(m.sigma, machines.Sign(a.demand))
 	default:
 		s.bounds(m.speed, math.Inf(-1), math.Inf(1))
 		s.bounds(m.sigma, -1, 1)
@@ -136,7 +137,7 @@ func (m *motorModel) bookShaft(k *booking) {
 	if a.given == duty.MotionCommand {
 		// what the machines on the shaft give, less the gear loss: T/i·(1 + g·sign(T·ω)) = given
 		given := -k.shaft[m.shaft].torque
-		load = given * m.ratio / (1 + m.g*sign(given*w))
+		load = given * m.ratio / (1 + m.g*machines.Sign(given*w))
 		lost = given - load/m.ratio
 	}
 	k.put(m.sigLoad, load)

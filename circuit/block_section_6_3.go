@@ -1,6 +1,8 @@
 package circuit
 
 import (
+	"slices"
+
 	"barlitre/machines/units"
 )
 
@@ -9,31 +11,16 @@ var section63Kind = &Kind{
 	Name: kindSection63, Title: "Open-centre section 6/3", Group: "valves",
 	Letter: "S", Typical: []Setting{{"nominal_flow", "60 L/min"}},
 	Text: "Section of a stack of six-way valves. The through-channel C1 to C2 is open in the centre and closes in the measure in which the section opens; P feeds the section in parallel to the others. `follows`, `directs` and commands as a directional valve. Put a check valve before P where the section has a load check.",
-	Ports: []Port{
+	Ports: append([]Port{
 		{Name: "C1", Type: Oil, Text: "through-channel, from the pump or the section before"},
 		{Name: "C2", Type: Oil, Text: "through-channel, to the next section or tank"},
-		{Name: "P", Type: Oil, Text: "supply"},
-		{Name: "A", Type: Oil, Text: "to the actuator"},
-		{Name: "B", Type: Oil, Text: "to the actuator"},
-		{Name: "T", Type: Oil, Text: "return"},
-	},
-	Params: []Param{
-		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its opening is found from the motion of this axis"},
-		{Key: "directs", Title: "Directs axis", Type: AxisRef, Text: "fully open in the direction of this axis"},
-		{Key: "nominal_flow", Title: "Nominal flow per edge", Symbol: "qN", Dim: units.Flow, Need: true, Above: true, Max: 10, Text: "of each edge, fully open, at the nominal drop"},
-		{Key: "nominal_drop", Title: "Nominal drop per edge", Symbol: "ΔpN", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "proportional valves: 5 bar an edge, common practice", Above: true, Max: 200e5, Text: "of one edge at its nominal flow"},
-		{Key: "flow_PA", Title: "Nominal flow P to A", Symbol: "qPA", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
-		{Key: "flow_PB", Title: "Nominal flow P to B", Symbol: "qPB", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
-		{Key: "flow_AT", Title: "Nominal flow A to T", Symbol: "qAT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
-		{Key: "flow_BT", Title: "Nominal flow B to T", Symbol: "qBT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
+	}, edgePorts...),
+	Params: slices.Concat(steered, edgeSizes, []Param{
 		{Key: "flow_bypass", Title: "Nominal flow of the through-channel", Symbol: "qC", Dim: units.Flow, Above: true, Max: 10, Text: "in the centre, at the nominal drop; default: as the edges"},
-		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
-	},
-	Losses: []LossKind{
-		{"metering P-A", ToOil, "P = (pP − pA)·q"}, {"metering P-B", ToOil, "P = (pP − pB)·q"},
-		{"metering A-T", ToOil, "P = (pA − pT)·q"}, {"metering B-T", ToOil, "P = (pB − pT)·q"},
-		{"through-channel", ToOil, "P = (pC1 − pC2)·q"},
-	},
+		ratedPressure,
+	}),
+	Losses: append(slices.Clone(edgeLosses),
+		LossKind{"through-channel", ToOil, "P = (pC1 − pC2)·q"}),
 	Equations: []Equation{
 		{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open", "orifice law from the nominal point of the edge"},
 		{"C1 to C2: q = (1 − u)·qC·√(Δp/ΔpN)", "linear overlap of through-channel and edges, our simplification"},

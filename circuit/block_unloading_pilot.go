@@ -17,7 +17,7 @@ var unloadingPilotKind = &Kind{
 		{Key: "range", Title: "Opening range", Symbol: "Δpb", Dim: units.Pressure, Default: "10 bar", Origin: Assumed, Source: "from closed to fully open, common practice, no source", Above: true, Max: 200e5, Text: "rise of the pilot pressure from closed to fully open"},
 		{Key: "nominal_flow", Title: "Nominal flow", Symbol: "qN", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "fully open, at the nominal drop"},
 		{Key: "nominal_drop", Title: "Nominal drop", Symbol: "ΔpN", Dim: units.Pressure, Default: "3 bar", Origin: Assumed, Source: "common practice 2 to 20 bar", Above: true, Max: 100e5, Text: "fully open, at the nominal flow"},
-		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
+		ratedPressure,
 	},
 	Losses: []LossKind{{"unloaded circulation", ToOil, "P = (pP − pT)·q"}},
 	Equations: []Equation{

@@ -2,8 +2,10 @@ package circuit
 
 import (
 	"math"
+	"slices"
 
 	"barlitre/circuit/duty"
+	"barlitre/machines"
 	"barlitre/machines/units"
 )
 
@@ -12,32 +14,17 @@ var valveKind = &Kind{
 	Name: kindValve, Title: "Directional valve 4/3", Group: "valves",
 	Letter: "V", Typical: []Setting{{"nominal_flow", "60 L/min"}},
 	Text: "Four edges, any centre. With `follows` it throttles so that the axis moves as the duty says (the same opening on both edges, or with `meter_out: separate` one of its own on the edge to tank); with `directs` it only chooses the direction, fully open; otherwise a track of the duty commands it.",
-	Ports: []Port{
-		{Name: "P", Type: Oil, Text: "supply"},
-		{Name: "A", Type: Oil, Text: "to the actuator"},
-		{Name: "B", Type: Oil, Text: "to the actuator"},
-		{Name: "T", Type: Oil, Text: "return"},
-		{Name: "LS", Type: Pilot, Optional: true, Source: true, Text: "pressure of the port that is fed; zero in the centre"},
-	},
-	Params: append([]Param{
-		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its opening is found from the motion of this axis"},
-		{Key: "directs", Title: "Directs axis", Type: AxisRef, Text: "fully open in the direction of this axis"},
+	Ports: append(slices.Clone(edgePorts),
+		Port{Name: "LS", Type: Pilot, Optional: true, Source: true, Text: "pressure of the port that is fed; zero in the centre"}),
+	Params: slices.Concat(steered, []Param{
 		{Key: "centre", Title: "Centre", Type: Choice, Default: "closed", Choices: []string{"closed", "open", "tandem", "float"}, Text: "closed; open: all joined; tandem: P to T, A and B closed; float: A and B to T, P closed"},
 		{Key: "extend", Title: "Position that feeds A", Type: Choice, Default: "normal", Choices: []string{"normal", "regenerative"}, Text: "normal: P to A, B to T; regenerative: A and B both joined to P, so that a cylinder with its bore side at A extends fast, pushed by the rod area alone"},
-		{Key: "nominal_flow", Title: "Nominal flow per edge", Symbol: "qN", Dim: units.Flow, Need: true, Above: true, Max: 10, Text: "of each edge, fully open, at the nominal drop"},
-		{Key: "nominal_drop", Title: "Nominal drop per edge", Symbol: "ΔpN", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "proportional valves: 5 bar an edge, common practice", Above: true, Max: 200e5, Text: "of one edge at its nominal flow"},
-		{Key: "flow_PA", Title: "Nominal flow P to A", Symbol: "qPA", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
-		{Key: "flow_PB", Title: "Nominal flow P to B", Symbol: "qPB", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
-		{Key: "flow_AT", Title: "Nominal flow A to T", Symbol: "qAT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
-		{Key: "flow_BT", Title: "Nominal flow B to T", Symbol: "qBT", Dim: units.Flow, Above: true, Max: 10, Text: "where it differs"},
+	}, edgeSizes, []Param{
 		{Key: "flow_centre", Title: "Nominal flow in the centre", Symbol: "qC", Dim: units.Flow, Above: true, Max: 10, Text: "of each path that is open in the centre; default: as the edges"},
-		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
-	}, meterOutParams...),
-	Losses: []LossKind{
-		{"metering P-A", ToOil, "P = (pP − pA)·q"}, {"metering P-B", ToOil, "P = (pP − pB)·q"},
-		{"metering A-T", ToOil, "P = (pA − pT)·q"}, {"metering B-T", ToOil, "P = (pB − pT)·q"},
-		{"unloaded circulation", ToOil, "P = (pP − pT)·q in the centre"},
-	},
+		ratedPressure,
+	}, meterOutParams),
+	Losses: append(slices.Clone(edgeLosses),
+		LossKind{"unloaded circulation", ToOil, "P = (pP − pT)·q in the centre"}),
 	Equations: []Equation{
 		{"q = u·qN·√(Δp/ΔpN) for each edge, the same u on both edges that are open; regenerative: those are P-A and P-B", "orifice law from the nominal point of the edge"},
 		{"separate: w on the edge to tank; w = 1 while the port fed is above pi, else it is at pi", "ideal meter-out control, complementarity"},
@@ -246,7 +233,7 @@ func (m *valveModel) position(s *step) {
 	m.dir, m.u, m.now = 0, 1, false
 	if m.axis < 0 {
 		if v, ok := s.command(m.id, duty.Command); ok && math.Abs(v) >= duty.StandstillShare {
-			m.dir, m.u = sign(v), math.Abs(v)
+			m.dir, m.u = machines.Sign(v), math.Abs(v)
 		}
 		return
 	}
@@ -261,7 +248,7 @@ func (m *valveModel) position(s *step) {
 			m.u = max(math.Abs(want), duty.StandstillShare)
 		}
 	}
-	m.dir = sign(want) * m.polarity.fixed()
+	m.dir = machines.Sign(want) * m.polarity.fixed()
 	m.now, m.wanted, m.flow = m.tracks, a.scaledDemand, a.flow
 }
 
@@ -337,7 +324,7 @@ func (m *valveModel) eval(e *eval) {
 	}
 	if m.open >= 0 {
 		if m.now { // more opening, more speed
-			sg := sign(m.wanted)
+			sg := machines.Sign(m.wanted)
 			e.add(m.open, sg*(e.val(m.vel)-m.wanted))
 			e.d(m.open, m.vel, sg)
 		} else {

@@ -64,6 +64,9 @@ type Param struct {
 	defaultValue Value
 }
 
+// ratedPressure limits the pressure of a block that states it as its Rating.
+var ratedPressure = Param{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"}
+
 // Section is a group of the parameters of a kind that has many; "" where it has few.
 type Section string
 
@@ -326,8 +329,8 @@ func (p *Param) end(text string) float64 {
 	return si
 }
 
-// checkValue reports in words what is wrong with a number for this parameter, or "".
-func (p *Param) checkValue(v Value) string {
+// CheckValue reports in words what is wrong with a number for this parameter, or "".
+func (p *Param) CheckValue(v Value) string {
 	u := v.Unit
 	if u.Symbol == "" && u.Factor == 0 {
 		u = units.Preferred(p.Dim, units.Metric)
@@ -348,9 +351,6 @@ func (p *Param) checkValue(v Value) string {
 	}
 	return ""
 }
-
-// CheckValue reports in words what is wrong with a number for this parameter, or "".
-func (p *Param) CheckValue(v Value) string { return p.checkValue(v) }
 
 // checkChoice reports what is wrong with a word for this parameter, or "".
 func (p *Param) checkChoice(w string) string {

@@ -91,7 +91,7 @@ func (k *checker) parameters(b *Block, kind *Kind) {
 		case p == nil || p.Type != Number:
 			k.say(Stops, b, key, "a %s has no number %q", kind.Title, key)
 		default:
-			if fault := p.checkValue(v); fault != "" {
+			if fault := p.CheckValue(v); fault != "" {
 				k.say(Stops, b, key, "%s (%s) %s", strings.ToLower(p.Title), key, fault)
 			}
 		}

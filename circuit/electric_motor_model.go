@@ -160,7 +160,7 @@ func (m *electricModel) turn(s *step, w float64) {
 	}
 	m.way, m.given = 0, 0
 	if w != 0 {
-		m.way = sign(w)
+		m.way = machines.Sign(w)
 	}
 	s.bounds(m.speed, math.Min(0, w), math.Max(0, w))
 	if m.slips && w != 0 {

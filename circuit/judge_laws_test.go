@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"barlitre/circuit/duty"
+	"barlitre/machines"
 )
 
 // lawsOfBlocks finds the laws that the blocks of the circuit must keep.
@@ -50,7 +51,7 @@ func (j *judge) sig(x *Sample, name string) float64 {
 // a hundredth of a bar, or a thousandth of the drop, makes.
 func (j *judge) turbulent(q, dp, qN, dN float64) bool {
 	const slack = 1e3 // Pa
-	law := func(dp float64) float64 { return sign(dp) * qN * math.Sqrt(math.Abs(dp)/dN) }
+	law := func(dp float64) float64 { return machines.Sign(dp) * qN * math.Sqrt(math.Abs(dp)/dN) }
 	e := slack + 1e-3*math.Abs(dp)
 	return law(dp-e) <= q+j.tiny() && q-j.tiny() <= law(dp+e)
 }
@@ -175,7 +176,7 @@ func (j *judge) piston(b *Block) {
 		if math.Abs(N) > dry+slack {
 			return fmt.Errorf("%s: %g N are left, dry friction %g", b.ID, N, dry)
 		}
-		if math.Abs(now.Speed)*A > 20*j.tiny() && math.Abs(N-sign(now.Speed)*dry) > slack {
+		if math.Abs(now.Speed)*A > 20*j.tiny() && math.Abs(N-machines.Sign(now.Speed)*dry) > slack {
 			return fmt.Errorf("%s moves at %g m/s with %g N of dry friction %g", b.ID, now.Speed, N, dry)
 		}
 		return nil
@@ -232,12 +233,12 @@ func (j *judge) control(i int) {
 			if now.Standing || now.End != 0 || limited {
 				return nil
 			}
-			open, lag := math.Abs(j.sig(x, name)), (now.Demand-now.Speed)*sign(now.Demand)
+			open, lag := math.Abs(j.sig(x, name)), (now.Demand-now.Speed)*machines.Sign(now.Demand)
 			slack := 1e-6*math.Abs(now.Demand) + least
 			switch {
 			case lag > slack && open < 1-1e-6:
 				return fmt.Errorf("%s does %g of %g with %s open by %g only", axis, now.Speed, now.Demand, b.ID, open)
-			case lag < -slack && open > 2e-6 && j.sig(x, name)*sign(now.Demand) > -1+1e-6 && b.Kind == kindValve:
+			case lag < -slack && open > 2e-6 && j.sig(x, name)*machines.Sign(now.Demand) > -1+1e-6 && b.Kind == kindValve:
 				return fmt.Errorf("%s does %g of %g with %s open by %g", axis, now.Speed, now.Demand, b.ID, open)
 			}
 			return nil

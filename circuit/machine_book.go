@@ -1,6 +1,10 @@
 package circuit
 
-import "math"
+import (
+	"math"
+
+	"barlitre/machines"
+)
 
 // bookMachine books slip and friction and returns the torque needed at the shaft.
 func (m *machine) bookMachine(k *booking) {
@@ -26,7 +30,7 @@ func (m *machine) bookMachine(k *booking) {
 	k.put(m.qS, k.m3s(q-a-c+dS))
 	k.put(m.qD, k.m3s(-dP-dS))
 	dp := (pP - pS) * k.scales.p
-	dir := sign(w)
+	dir := machines.Sign(w)
 	if m.free {
 		dir = k.val(m.sigma)
 	}

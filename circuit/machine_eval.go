@@ -136,11 +136,11 @@ type torque struct{ need, e, w, p, sigma float64 }
 
 func (m *machine) torque(e *eval) torque {
 	set, w, dp := e.val(m.e), e.val(m.speed), e.val(m.P)-e.val(m.S)
-	sg := sign(w)
+	sg := machines.Sign(w)
 	if m.free {
 		sg = e.val(m.sigma)
 	}
-	dry, slope := m.cf1*math.Abs(dp)+m.tc1, m.cf1*sign(dp)
+	dry, slope := m.cf1*math.Abs(dp)+m.tc1, m.cf1*machines.Sign(dp)
 	rub := torque{sg*dry + m.visc*w, 0, m.visc, sg * slope, dry}
 	if m.law.Ch > 0 {
 		T, byE, byW := m.law.InertialTorque(set, w*m.wPer, m.oil.Density)

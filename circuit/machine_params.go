@@ -61,7 +61,7 @@ func wearParams(share string) []Param {
 // limitParams are what a machine stands.
 func limitParams() []Param {
 	return Limits.of([]Param{
-		{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"},
+		ratedPressure,
 		{Key: "max_speed", Title: "Highest speed", Symbol: "n2", Dim: units.AngularSpeed, Above: true, Max: 2000, Text: "highest permitted speed"},
 		{Key: "min_speed", Title: "Lowest speed", Symbol: "n1", Dim: units.AngularSpeed, Max: 2000, Text: "lowest permitted speed while it carries pressure"},
 		{Key: "min_viscosity", Title: "Lowest viscosity", Symbol: "ν1", Dim: units.KinematicViscosity, Default: "10 mm2/s", Origin: Assumed, Source: "common practice, no source; its maker's figure comes first", Max: 1, Text: "thinnest oil it may run with"},

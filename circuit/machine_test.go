@@ -196,7 +196,7 @@ func TestMapInTheBalance(t *testing.T) {
 		if q := e*law.D*w - slip; math.Abs(q+at("P.q")) > 1e-9*law.D*157 {
 			t.Fatalf("at %g s: flow %g, by the map %g", cols.t[i], -at("P.q"), q)
 		}
-		T := e*law.D*dp + chart.Friction(e, w, dp).V*fit.Law.FrictionTorque(e, w, dp, fluid.Mu, fluid.Rho)*sign(w)
+		T := e*law.D*dp + chart.Friction(e, w, dp).V*fit.Law.FrictionTorque(e, w, dp, fluid.Mu, fluid.Rho)*machines.Sign(w)
 		if math.Abs(T-at("T")) > 1e-7*math.Abs(T)+1e-6 {
 			t.Fatalf("at %g s: torque %g, by the map %g", cols.t[i], at("T"), T)
 		}

@@ -29,7 +29,7 @@ func strokeParams(sealShare string, more ...Param) []Param {
 	ps = append(ps, more...)
 	return append(ps,
 		Param{Key: "mass", Title: "Moved mass", Symbol: "m", Dim: units.Mass, Default: "0 kg", Origin: Assumed, Source: "the load track holds all of it unless given", Max: 1e7, Text: "its inertia force is added to the load"},
-		Param{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"})
+		ratedPressure)
 }
 
 var pistonLosses = []LossKind{

@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"barlitre/circuit/duty"
+	"barlitre/machines"
 	"barlitre/machines/units"
 )
 
@@ -208,7 +209,7 @@ func (m *pistonModel) govern(s *step, a *axisStep) {
 		}
 	case a.given == duty.MotionCommand:
 		s.set(m.v, a.demand*m.scale)
-		s.set(m.sigma, sign(a.demand))
+		s.set(m.sigma, machines.Sign(a.demand))
 	default:
 		s.bounds(m.v, m.lo, m.hi)
 		s.bounds(m.sigma, -1, 1)
@@ -236,7 +237,7 @@ func (m *pistonModel) eval(e *eval) {
 	dry := m.fc1 + m.kp1*math.Abs(pA-pB)
 	e.add(m.v, m.load+k*(sg*dry+m.visc1*v-pA+m.ratio*pB))
 	if !e.plain() {
-		slope := m.kp1 * sign(pA-pB)
+		slope := m.kp1 * machines.Sign(pA-pB)
 		e.d(m.v, m.v, k*m.visc1)
 		e.d(m.v, m.pA, k*(-1+sg*slope))
 		e.d(m.v, m.pB, k*(m.ratio-sg*slope))
@@ -306,15 +307,4 @@ func (m *pistonModel) bookEnd(k *booking, a *axisStep, vs, N float64) {
 		return
 	}
 	k.pow[m.ended] += N * vs / m.scale
-}
-
-// sign returns −1, 0 or 1.
-func sign(x float64) float64 {
-	switch {
-	case x > 0:
-		return 1
-	case x < 0:
-		return -1
-	}
-	return 0
 }

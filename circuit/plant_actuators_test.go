@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"barlitre/circuit/duty"
+	"barlitre/machines"
 )
 
 // actuator hangs a cylinder or motor between two ports, with or without make-up.
@@ -92,7 +93,7 @@ func (p *plant) moves(axis string, kind duty.AxisKind, top, load float64, given 
 	}
 	what := duty.Speed
 	if given == duty.LoadCommand {
-		what, v1, v2 = duty.Command, sign(v1)*(0.05+0.95*p.Float64()), sign(v2)*(0.05+0.95*p.Float64())
+		what, v1, v2 = duty.Command, machines.Sign(v1)*(0.05+0.95*p.Float64()), machines.Sign(v2)*(0.05+0.95*p.Float64())
 	}
 	f1, f2 := load*p.Float64(), load*(p.Float64()-0.4)
 	if p.one(8) { // it pulls all the time

@@ -8,6 +8,7 @@ import (
 	"testing"
 
 	"barlitre/circuit/duty"
+	"barlitre/machines"
 )
 
 // winchOn is a winch in a closed circuit without losses but those of the electric side: the pump goes over centre.
@@ -148,7 +149,7 @@ func TestFloatDrivesGenerator(t *testing.T) {
 		turned[v > 0] = true
 		near(t, "speed", w, math.Abs(v)*A/D, 1e-6)
 		if p := -T / D; p < 295e5 {
-			near(t, "load", F, -sign(v)*p*A, 1e-5)
+			near(t, "load", F, -machines.Sign(v)*p*A, 1e-5)
 		}
 	}
 	if n < 300 || len(turned) != 2 {

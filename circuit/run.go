@@ -8,6 +8,7 @@ import (
 
 	"barlitre/circuit/balance"
 	"barlitre/circuit/duty"
+	"barlitre/machines"
 	"barlitre/machines/units"
 )
 
@@ -236,7 +237,7 @@ func (r *run) begin(k int, share float64) {
 		if m := &r.movers[i]; m.speed >= 0 && a.given == duty.MotionLoad && a.demand*r.behind[i] <= 0 {
 			s.x[m.speed] = a.scaledDemand
 			if !a.standing { // else the active set must first find out which way it rubs
-				s.x[m.sigma] = sign(a.scaledDemand)
+				s.x[m.sigma] = machines.Sign(a.scaledDemand)
 			}
 		}
 	}

@@ -1,6 +1,9 @@
 package circuit
 
-import "barlitre/circuit/balance"
+import (
+	"barlitre/circuit/balance"
+	"barlitre/machines"
+)
 
 // solve balances a point in time.
 func (r *run) solve(k int, share float64, x, good []float64, warm bool) balance.Result {
@@ -103,7 +106,7 @@ func (r *run) cold(level int, x []float64) {
 	for i, m := range r.movers {
 		if m.speed >= 0 {
 			x[m.speed] = guess.speed * r.step.axes[i].scaledDemand
-			x[m.sigma] = sign(r.step.axes[i].scaledDemand)
+			x[m.sigma] = machines.Sign(r.step.axes[i].scaledDemand)
 		}
 	}
 	for _, m := range r.models {

@@ -97,7 +97,7 @@ func (m *machine) evalSwitched(e *eval) {
 			continue
 		}
 		e.conduct(way.a, way.b, way.k)
-		byE := m.switched.slip * way.share * sign(set) * (e.val(way.a) - e.val(way.b))
+		byE := m.switched.slip * way.share * machines.Sign(set) * (e.val(way.a) - e.val(way.b))
 		e.d(way.a, m.e, byE)
 		e.d(way.b, m.e, -byE)
 	}

@@ -83,7 +83,7 @@ func PipeDrop(q, d, l, roughness, zeta, rho, mu float64) (dp, slope float64) {
 		dp, slope = scale*h, scale*s*toRe
 	}
 	k := zeta * rho / (2 * area * area)
-	return sign(q) * (dp + k*q*q), slope + 2*k*math.Abs(q)
+	return Sign(q) * (dp + k*q*q), slope + 2*k*math.Abs(q)
 }
 
 // rounded is R(y) = y·√(y² + yl²) with its slope: a square law that turns linear below yl. R is odd and monotone,
@@ -118,7 +118,7 @@ func NominalFlow(dp, qN, dpN, ql float64) (q, slope float64) {
 		q = y * math.Sqrt(2/(l2+math.Hypot(l2, 2*y)))
 	}
 	_, s := rounded(q, ql)
-	return sign(dp) * q, qN * qN / (dpN * s)
+	return Sign(dp) * q, qN * qN / (dpN * s)
 }
 
 // OrificeDrop returns the pressure drop [Pa] and its slope at flow q [m³/s] of an orifice of discharge

@@ -96,7 +96,7 @@ func (m Displacement) CompressionFlow(e, w, dp, bulk, air float64) (q, byDP, byE
 	}
 	share, slope := Compression(dp, bulk, air)
 	c := m.compressed(e, w)
-	return c * share, c * slope, m.K * m.D * sign(e) * math.Abs(w) * share, m.D * (m.K*math.Abs(e) + m.Kd) * sign(w) * share
+	return c * share, c * slope, m.K * m.D * Sign(e) * math.Abs(w) * share, m.D * (m.K*math.Abs(e) + m.Kd) * Sign(w) * share
 }
 
 // Flow returns the flow Q [m³/s] leaving the outlet port,
@@ -128,7 +128,7 @@ func (m Displacement) inertial(rho float64) float64 {
 // InertialTorque returns the third term of equation (3) [N·m] with the sign of w, and its slopes by e and w.
 func (m Displacement) InertialTorque(e, w, rho float64) (t, byE, byW float64) {
 	k := m.inertial(rho)
-	return k * math.Abs(e) * w * math.Abs(w), k * sign(e) * w * math.Abs(w), 2 * k * math.Abs(e*w)
+	return k * math.Abs(e) * w * math.Abs(w), k * Sign(e) * w * math.Abs(w), 2 * k * math.Abs(e*w)
 }
 
 // Torque returns the torque T [N·m] the shaft must be given,
@@ -138,7 +138,7 @@ func (m Displacement) InertialTorque(e, w, rho float64) (t, byE, byW float64) {
 // T·ω < 0 is power taken from the shaft: a motor. At ω = 0 friction has no direction and is
 // left out; what the shaft can hold or must break away from is a question for FrictionTorque.
 func (m Displacement) Torque(e, w, dp, mu, rho float64) float64 {
-	return e*m.D*dp + sign(w)*m.FrictionTorque(e, w, dp, mu, rho)
+	return e*m.D*dp + Sign(w)*m.FrictionTorque(e, w, dp, mu, rho)
 }
 
 // SlipLoss returns the power lost by slip [W], Qs·Δp, >= 0.

@@ -49,17 +49,6 @@ package machines
 
 import "math"
 
-// sign is -1, 0 or 1: at standstill no direction is preferred.
-func sign(x float64) float64 {
-	switch {
-	case x > 0:
-		return 1
-	case x < 0:
-		return -1
-	}
-	return 0
-}
-
 // positive reports whether x is a finite number above zero.
 func positive(x float64) bool { return x > 0 && !math.IsInf(x, 1) }
 

@@ -114,7 +114,7 @@ func (o FitOptions) problems(points []Point) (flow, torque least) {
 			}
 		}
 		flow.rows, flow.right = append(flow.rows, rq), append(flow.right, wq*(p.E*o.D*p.W-p.Q))
-		torque.rows, torque.right = append(torque.rows, rt), append(torque.right, wt*sign(p.W)*(p.T-p.E*o.D*p.DP))
+		torque.rows, torque.right = append(torque.rows, rt), append(torque.right, wt*Sign(p.W)*(p.T-p.E*o.D*p.DP))
 	}
 	return flow, torque
 }

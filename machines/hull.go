@@ -42,7 +42,7 @@ func NewHull(points []Point) *Hull {
 
 // hullPlace makes turning backwards and a negative setting one with the mirrored state, but not pump with motor.
 func hullPlace(e, w, dp float64) [3]float64 {
-	return [3]float64{math.Abs(w), math.Abs(e), dp * sign(e*w)}
+	return [3]float64{math.Abs(w), math.Abs(e), dp * Sign(e*w)}
 }
 
 // hullSlack is the share of the way to the centre by which a state may lie outside and still count as inside: full setting

@@ -46,14 +46,14 @@ func NewMap(f *Fit) *Map {
 	for _, p := range f.Points {
 		fluid := f.Fluid.at(p)
 		derived, torque := p.E*f.Law.D*p.W, p.E*f.Law.D*p.DP
-		s := sign(p.DP) * f.Law.Slip(p.E, p.W, p.DP, fluid.Mu, fluid.Rho, fluid.modulus(p.DP))
+		s := Sign(p.DP) * f.Law.Slip(p.E, p.W, p.DP, fluid.Mu, fluid.Rho, fluid.modulus(p.DP))
 		t := f.Law.FrictionTorque(p.E, p.W, p.DP, fluid.Mu, fluid.Rho)
 		if !(s > 0 && t > 0) {
 			continue
 		}
 		at = append(at, m.coordinates(p.E, p.W, p.DP))
-		slip = append(slip, logRatio(sign(p.DP)*(derived-p.Q), s))
-		rub = append(rub, logRatio(sign(p.W)*(p.T-torque), t))
+		slip = append(slip, logRatio(Sign(p.DP)*(derived-p.Q), s))
+		rub = append(rub, logRatio(Sign(p.W)*(p.T-torque), t))
 		slipNoise = append(slipNoise, measuredNoise*math.Abs(derived)/s)
 		rubNoise = append(rubNoise, measuredNoise*math.Abs(torque)/t)
 	}
@@ -78,7 +78,7 @@ func (m *Map) Friction(e, w, dp float64) Factor { return m.factor(&m.friction, e
 func (m *Map) factor(f *field, e, w, dp float64) Factor {
 	v, g := f.value(m.coordinates(e, w, dp))
 	v = math.Exp(v)
-	return Factor{v, v * g[1] * sign(e), v * g[0] * sign(w) / m.w, v * g[2] * sign(dp) / m.dp}
+	return Factor{v, v * g[1] * Sign(e), v * g[0] * Sign(w) / m.w, v * g[2] * Sign(dp) / m.dp}
 }
 
 // correlation is the kernel of two places.
@@ -146,6 +146,6 @@ func krige(at [][3]float64, y, noise []float64) field {
 // EfficiencyIn is the overall efficiency by the map with a law, that of the fit or a worn one; NaN where there is none.
 func (m *Map) EfficiencyIn(law Displacement, e, w, dp float64, fluid Fluid) float64 {
 	q := e*law.D*w - m.Slip(e, w, dp).V*law.Slip(e, w, dp, fluid.Mu, fluid.Rho, fluid.modulus(dp))
-	t := e*law.D*dp + sign(w)*m.Friction(e, w, dp).V*law.FrictionTorque(e, w, dp, fluid.Mu, fluid.Rho)
+	t := e*law.D*dp + Sign(w)*m.Friction(e, w, dp).V*law.FrictionTorque(e, w, dp, fluid.Mu, fluid.Rho)
 	return Point{W: w, E: e, DP: dp, Q: q, T: t}.Overall()
 }

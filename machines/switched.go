@@ -104,8 +104,8 @@ func (m Switched) DragSlopes(x, dp, bulk, air float64) (byX, byDP float64) {
 	a := math.Abs(x)
 	strain, slope := Compression(dp, bulk, air)
 	lost := (1 - m.Returned) * m.Dead / 2
-	byX = sign(x) * (m.D*(m.Cf*math.Abs(dp)-m.Idle+lost*dp*strain) + m.Switch*m.N*(m.Active-m.Rest)/units.Revolution)
-	return byX, a * m.D * (m.Cf*sign(dp) + lost*(strain+dp*slope))
+	byX = Sign(x) * (m.D*(m.Cf*math.Abs(dp)-m.Idle+lost*dp*strain) + m.Switch*m.N*(m.Active-m.Rest)/units.Revolution)
+	return byX, a * m.D * (m.Cf*Sign(dp) + lost*(strain+dp*slope))
 }
 
 // FrictionTorque returns all torque that opposes the motion [N·m], >= 0: equation (S2) with Cv·D·μ·|ω| + Tc.
@@ -115,7 +115,7 @@ func (m Switched) FrictionTorque(x, w, dp float64, f Fluid) float64 {
 
 // Torque returns the torque the shaft must be given [N·m], x·D·Δp and the friction against the motion; < 0 as a motor.
 func (m Switched) Torque(x, w, dp float64, f Fluid) float64 {
-	return x*m.D*dp + sign(w)*m.FrictionTorque(x, w, dp, f)
+	return x*m.D*dp + Sign(w)*m.FrictionTorque(x, w, dp, f)
 }
 
 // Loss returns the power lost [W], >= 0: shaft power less hydraulic power.
@@ -135,7 +135,7 @@ func (m Switched) Efficiency(x, w, dp float64, f Fluid) (eff Efficiency, ok bool
 // FractionFor returns the fraction that gives a flow q [m³/s] at the outlet; it may lie beyond −1..1. NaN where the
 // shaft stands, or slip takes all that a cylinder delivers.
 func (m Switched) FractionFor(q, w, dp, mu float64) float64 {
-	x := q / (m.D*w - sign(q)*sign(w)*m.Cs*m.D*dp/mu)
+	x := q / (m.D*w - Sign(q)*Sign(w)*m.Cs*m.D*dp/mu)
 	if math.IsInf(x, 0) || x*q*w < 0 {
 		return math.NaN()
 	}

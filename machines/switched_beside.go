@@ -14,7 +14,7 @@ func (m Displacement) Sized(d float64) Displacement {
 func (m Displacement) SettingFor(q, w, dp float64, f Fluid) float64 {
 	bulk := f.modulus(dp)
 	q0 := q + m.Slip(0, w, dp, f.Mu, f.Rho, bulk) // K alone grows with the setting
-	e := q0 / (m.D*w - sign(q0)*sign(w)*m.K*m.D*math.Abs(w)*dp/bulk)
+	e := q0 / (m.D*w - Sign(q0)*Sign(w)*m.K*m.D*math.Abs(w)*dp/bulk)
 	if math.IsInf(e, 0) || e*q0*w < 0 {
 		return math.NaN()
 	}
