@@ -1,6 +1,9 @@
 package circuit
 
-import "barlitre/machines/units"
+import (
+	"barlitre/machines"
+	"barlitre/machines/units"
+)
 
 // electricMotorKind is an induction or permanent-magnet motor: it gives its shaft a
 // speed, and the machines on the shaft ask it for torque.
@@ -15,7 +18,7 @@ var electricMotorKind = &Kind{
 	Params: sectioned([]Param{
 		{Key: "rated_power", Title: "Rated power", Symbol: "PN", Dim: units.Power, Need: true, Above: true, Max: 5e6, Text: "shaft power on the name plate"},
 		{Key: "type", Title: "Type", Type: Choice, Default: "induction", Choices: []string{"induction", "permanent_magnet"}, Text: "permanent_magnet: servo motor without slip, behind a converter"},
-		{Key: "efficiency_class", Title: "Efficiency class", Type: Choice, Choices: []string{"IE1", "IE2", "IE3", "IE4"}, Text: "by IEC 60034-30-1, 0.75 to 200 kW, 2, 4 or 6 poles, 50 Hz; gives the efficiency where none is typed"},
+		{Key: "efficiency_class", Title: "Efficiency class", Type: Choice, Choices: machines.MotorClasses(), Text: "by IEC 60034-30-1, 0.75 to 200 kW, 2, 4 or 6 poles, 50 Hz; gives the efficiency where none is typed"},
 		{Key: "poles", Title: "Poles", Symbol: "p", Dim: units.Count, Default: "4", Origin: Assumed, Source: "most pump motors, common practice", Min: 2, Max: 12, Text: "even; with the frequency they give the speed of the field"},
 		{Key: "efficiency", Title: "Efficiency at rated load", Symbol: "ηN", Dim: units.Ratio, Above: true, Max: 1, Derived: "that of its efficiency class", Text: "on the name plate; or give its efficiency_class"},
 		{Key: "speed", Title: "Speed", Symbol: "n", Dim: units.AngularSpeed, Default: "1480 rpm", Origin: Assumed, Source: "four poles, 50 Hz, loaded; common practice", Above: true, Max: 1000, Derived: "1480 rpm with four poles at 50 Hz, else 1.3 % below that of the field", Text: "rated speed; a motor of constant speed turns at it"},

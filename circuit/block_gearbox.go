@@ -128,7 +128,7 @@ func (k *compiler) placeTrain(n *net) {
 	for _, j := range joints {
 		near := k.shaftOf[j.near.id]
 		s := k.shafts[near]
-		far := shaft{name: j.far.name(), speed: s.speed, sigma: s.sigma, row: noSlot, free: s.free, driver: s.driver, all: k.Compiled,
+		far := shaft{speed: s.speed, sigma: s.sigma, row: noSlot, free: s.free, driver: s.driver, all: k.Compiled,
 			way: append(append([]gearStep(nil), s.way...), gearStep{k.param(j.box, "ratio"), j.outward})}
 		if far.free {
 			far.row = k.unknown(otherRow, j.box.ID+" torque")

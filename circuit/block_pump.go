@@ -118,18 +118,19 @@ type pumpModel struct {
 	hold     string
 	k        *Compiled
 
-	target, unloadedAt, eMin, eMax, given float64
-	flowSet                               float64 // m³/s
-	from, fall                            float64 // of negative_flow: pilot pressure and fall of the setting beyond it
-	atRest                                bool    // it has an unloaded pressure
-	most                                  float64 // scaled torque at the power limit
-	full                                  float64 // m³/s at the reference speed
-	goal                                  float64 // of the step
-	way                                   float64 // in which its setting grows, 1 or −1
-	tracking                              bool
-	dir                                   float64
-	wanted                                float64
-	vel                                   slot
+	told, toldP, toldQ              column // commands, set pressure [Pa] and set flow [m³/s]
+	target, unloadedAt, eMin, given float64
+	flowSet                         float64 // m³/s
+	from, fall                      float64 // of negative_flow: pilot pressure and fall of the setting beyond it
+	atRest                          bool    // it has an unloaded pressure
+	most                            float64 // scaled torque at the power limit
+	full                            float64 // m³/s at the reference speed
+	goal                            float64 // of the step
+	way                             float64 // in which its setting grows, 1 or −1
+	tracking                        bool
+	dir                             float64
+	wanted                          float64
+	vel                             slot
 }
 
 func buildPump(k *compiler, b *Block) model {
@@ -170,7 +171,7 @@ func buildPump(k *compiler, b *Block) model {
 	m.setFlow = k.param(b, "set_flow")
 	m.margin, m.minSet = k.param(b, "margin"), k.param(b, "min_setting")
 	m.start, m.end = k.param(b, "signal_start"), k.param(b, "signal_end")
-	m.eMin, m.eMax = 0, 1
+	m.eMin = 0
 	if kind.WordOf(b, "both_directions") == "yes" {
 		m.eMin = -1
 	}
@@ -192,6 +193,7 @@ func (m *pumpModel) bind(b *binding) {
 	if m.ctl == sensesLoad {
 		m.target = b.p[m.margin] / b.scales.p
 	}
+	m.told, m.toldP, m.toldQ = b.commanded(m.id, duty.Command), b.commanded(m.id, duty.SetPressure), b.commanded(m.id, duty.SetFlow)
 	m.given, m.flowSet = b.get(m.setting, 1), b.get(m.setFlow, 0)
 	if m.regulated() {
 		m.eMin = b.get(m.minSet, 0)
@@ -216,11 +218,7 @@ func (m *pumpModel) begin(s *step) {
 	case heldConstant, limitsPower:
 		m.take(s, 1)
 	case takesTrack:
-		v := m.given
-		if c, ok := s.command(m.id, duty.Command); ok {
-			v = c
-		}
-		m.take(s, max(m.eMin, v))
+		m.take(s, max(m.eMin, m.told.at(s, m.given)))
 	case holdsPressureFlow:
 		m.pressureFlow(s)
 	case holdsPressure, sensesLoad, sensesFlow:
@@ -267,13 +265,10 @@ func (m *pumpModel) take(s *step, v float64) {
 // pressureFlow takes set pressure and set flow, from tracks where the duty has them.
 func (m *pumpModel) pressureFlow(s *step) {
 	m.goal = m.target
-	if p, ok := s.command(m.id, duty.SetPressure); ok {
-		m.goal = p / s.pScale
+	if m.toldP != nil {
+		m.goal = m.toldP[s.k] / s.pScale
 	}
-	q := m.flowSet
-	if v, ok := s.command(m.id, duty.SetFlow); ok {
-		q = v
-	}
+	q := m.toldQ.at(s, m.flowSet)
 	if s.unloaded() && m.atRest {
 		m.goal = m.unloadedAt
 	}

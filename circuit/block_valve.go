@@ -81,7 +81,6 @@ type valveModel struct {
 	ls         slot
 	axis       int
 	vel        slot
-	hold       string
 	given      duty.Given
 	polarity   polarity
 	directs    bool
@@ -98,6 +97,7 @@ type valveModel struct {
 	loss       [edges]int
 	around     int
 
+	told   column // commands
 	full   [edges]throat
 	mid    throat
 	branch [4]branch // of the step
@@ -147,7 +147,7 @@ func newValve(k *compiler, b *Block, around string) valveModel {
 	if axis != "" {
 		m.axis = k.axisOf[axis]
 		mv := k.movers[m.axis]
-		m.vel, m.hold, m.given = mv.speed, mv.hold, mv.given
+		m.vel, m.given = mv.speed, mv.given
 		m.polarity = k.polarityOf(PortRef{b.ID, "A"}, m.axis)
 		m.tracks = !m.directs && m.given == duty.MotionLoad
 	}
@@ -169,6 +169,7 @@ func (m *valveModel) bind(b *binding) {
 	if m.open >= 0 {
 		b.bound.Lo[m.open], b.bound.Hi[m.open] = leastOpening, 1
 	}
+	m.told = b.commanded(m.id, duty.Command)
 	m.out.bind(b)
 	m.was = math.NaN()
 }
@@ -223,7 +224,7 @@ func (m *valveModel) begin(s *step) {
 	}
 	m.out.begin(s, m.dir != 0)
 	if m.dir != m.was { // another position: start its edges anew
-		m.start(s, s.x)
+		m.start(s.x)
 		m.was = m.dir
 	}
 }
@@ -232,7 +233,7 @@ func (m *valveModel) begin(s *step) {
 func (m *valveModel) position(s *step) {
 	m.dir, m.u, m.now = 0, 1, false
 	if m.axis < 0 {
-		if v, ok := s.command(m.id, duty.Command); ok && math.Abs(v) >= duty.StandstillShare {
+		if v := m.told.at(s, 0); math.Abs(v) >= duty.StandstillShare {
 			m.dir, m.u = machines.Sign(v), math.Abs(v)
 		}
 		return
@@ -253,7 +254,7 @@ func (m *valveModel) position(s *step) {
 }
 
 // start gives the flows and the throttling of a new position a first value.
-func (m *valveModel) start(s *step, x []float64) {
+func (m *valveModel) start(x []float64) {
 	for i, q := range m.q {
 		if q >= 0 && m.branch[i].on {
 			x[q] = min(0.05, math.Abs(m.wanted)+1e-3)
@@ -271,7 +272,7 @@ func (m *valveModel) start(s *step, x []float64) {
 }
 
 func (m *valveModel) cold(s *step, level int, x []float64) {
-	m.start(s, x)
+	m.start(x)
 	if m.now {
 		x[m.open] = coldStartOf(level).opening
 	}

@@ -45,16 +45,13 @@ type mover struct {
 	sigma  slot // share of the dry friction, −1..1
 	given  duty.Given
 	hold   string
-	rotary bool
 	sizes  []pistonSize              // of its cylinders, which move as one
 	volume func(p []float64) float64 // m² or m³/rad per unit of axis speed
 	slip   func(p []float64) float64 // leakage past the actuator times viscosity [m³], nil = none
-	fed    bool                      // a control follows it
 }
 
 // shaft is a node of speed and torque.
 type shaft struct {
-	name   string
 	speed  slot
 	sigma  slot // of a free shaft
 	row    slot // of a free shaft: its torque balance
@@ -71,7 +68,6 @@ type oilNode struct {
 	slot  slot
 	name  string
 	pilot bool
-	src   int // parameter of a pressure source, −1
 }
 
 type rowKind int
@@ -124,7 +120,7 @@ func Compile(c *Circuit, axes []duty.Axis, d *duty.Duty) (*Compiled, []Finding) 
 	k.nets, k.of = netsOf(c)
 	for i, a := range axes {
 		k.axisOf[a.Name] = i
-		k.movers = append(k.movers, mover{given: d.Given(a.Name), rotary: a.Kind == duty.Rotary, speed: noSlot, sigma: noSlot})
+		k.movers = append(k.movers, mover{given: d.Given(a.Name), speed: noSlot, sigma: noSlot})
 	}
 	k.air = k.fixed()
 	k.placeNodes()
@@ -224,13 +220,10 @@ func (k *compiler) placeNodes() {
 		if n.typ != Oil && n.typ != Pilot {
 			continue
 		}
-		node := oilNode{name: n.name(), pilot: n.typ == Pilot, src: -1}
+		node := oilNode{name: n.name(), pilot: n.typ == Pilot}
 		switch {
-		case n.tank != "":
+		case n.tank != "", n.src != "":
 			node.slot = k.fixed()
-		case n.src != "":
-			node.slot = k.fixed()
-			node.src = k.param(k.circuit.Block(n.src), "pressure")
 		case node.pilot:
 			node.slot = k.unknown(otherRow, n.name())
 		default:
@@ -258,7 +251,7 @@ func (k *compiler) placeShafts() {
 
 // newShaft places the first shaft of a train; imposed says that the duty gives its motion.
 func (k *compiler) newShaft(n *net, imposed bool) int {
-	s := shaft{name: n.name(), sigma: noSlot, row: noSlot, all: k.Compiled}
+	s := shaft{sigma: noSlot, row: noSlot, all: k.Compiled}
 	for _, p := range n.ports {
 		b := k.circuit.Block(p.Block)
 		if !drives(b) {
@@ -291,7 +284,7 @@ func (k *compiler) newShaft(n *net, imposed bool) int {
 // freeShaft makes a shaft without a prime mover: its speed is found from its
 // torque balance, unless the duty imposes the motion of an axis on it.
 func (k *compiler) freeShaft(name string, imposed bool) shaft {
-	s := shaft{name: name, free: true, all: k.Compiled}
+	s := shaft{free: true, all: k.Compiled}
 	if imposed {
 		s.speed, s.sigma = k.fixed(), k.fixed()
 	} else {

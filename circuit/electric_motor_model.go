@@ -33,6 +33,7 @@ type electricModel struct {
 	poles, frequency            int
 
 	law         motorLaw
+	told        column // commands
 	wPer        float64
 	w, lo, hi   float64
 	tracking    bool
@@ -80,6 +81,7 @@ func (m *electricModel) clone() model { c := *m; return &c }
 func (m *electricModel) bind(b *binding) {
 	w := b.p[m.n]
 	m.law.bind(b)
+	m.told = b.commanded(m.id, duty.Command)
 	m.electric.bind(b)
 	m.start.bind(b)
 	size := m.k.shafts[m.shaft].size(b.p)
@@ -115,10 +117,7 @@ func (m *electricModel) begin(s *step) {
 			m.turn(s, m.w)
 		}
 	case takesTrack:
-		v := 1.0
-		if c, ok := s.command(m.id, duty.Command); ok {
-			v = c
-		}
+		v := m.told.at(s, 1)
 		switch {
 		case m.off:
 			m.turn(s, 0)

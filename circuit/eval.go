@@ -288,6 +288,12 @@ type binding struct {
 	cond Conditions
 	scales
 	bound *balance.Solver
+	duty  map[duty.Control][]float64 // what it says for blocks, by time step
+}
+
+// commanded returns the column of what the duty says for a block.
+func (b *binding) commanded(block string, w duty.What) column {
+	return b.duty[duty.Control{Block: block, What: w}]
 }
 
 // get returns parameter i, or fallback when the block has none.
@@ -308,7 +314,6 @@ type step struct {
 	standing bool   // all axes stand
 	stood    bool   // all axes stood at the point before
 	atRest   AtRest // what the prime movers do while all stand
-	commands map[duty.Control][]float64
 	solver   *balance.Solver
 	x        []float64 // the unknowns
 	now      *eval     // that hold them and the known numbers
@@ -343,13 +348,15 @@ func (s *step) noRest(node slot) {
 	}
 }
 
-// command returns what a track of the duty says for a block in this step.
-func (s *step) command(block string, w duty.What) (float64, bool) {
-	v := s.commands[duty.Control{Block: block, What: w}]
-	if v == nil {
-		return 0, false
+// column is what a track of the duty says for a block, by time step; nil where it has none.
+type column []float64
+
+// at returns what it says in a step, or what else holds.
+func (c column) at(s *step, fallback float64) float64 {
+	if c == nil {
+		return fallback
 	}
-	return v[s.k], true
+	return c[s.k]
 }
 
 // off reports whether the prime movers are switched off.

@@ -82,7 +82,7 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params, leak: leak}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
 	r.ev = eval{known: slot(c.nfix), all: make([]float64, c.nfix+c.n), rows: r.solver.Border(c.nfix)}
-	r.step = step{axes: make([]axisStep, len(c.axes)), commands: s.Commands, atRest: c.circuit.PumpAtRest, solver: r.solver,
+	r.step = step{axes: make([]axisStep, len(c.axes)), atRest: c.circuit.PumpAtRest, solver: r.solver,
 		x: r.ev.all[c.nfix:], now: &r.ev, rest: make([]float64, c.n), restK: make([]float64, c.n), pScale: r.scales.p}
 	for i := range r.rows {
 		if r.rows[i].kind == flowRow {
@@ -94,7 +94,7 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 			r.solver.Lo[sh.sigma], r.solver.Hi[sh.sigma] = -1, 1
 		}
 	}
-	b := &binding{p: params, cond: cond, scales: r.scales, bound: r.solver}
+	b := &binding{p: params, cond: cond, scales: r.scales, bound: r.solver, duty: s.Commands}
 	for _, m := range c.models {
 		m = m.clone()
 		m.bind(b)
@@ -165,7 +165,7 @@ func (r *run) all(ctx context.Context, st State, from, end int, to Receiver) (St
 		} else if lost++; lost >= lostSteps {
 			return fmt.Errorf("%w: %d time steps in a row, the last at %g s; %s", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0])
 		}
-		r.report(k, !res.Solved())
+		r.report(!res.Solved())
 		if !res.Solved() {
 			copy(x, good)
 		}
@@ -316,10 +316,10 @@ func (r *run) bookAll() {
 }
 
 // report books the step into the sample and takes its states over.
-func (r *run) report(k int, unbalanced bool) {
+func (r *run) report(unbalanced bool) {
 	r.bookAll()
 	r.voids(&r.book)
-	r.axesNow(k, unbalanced)
+	r.axesNow(unbalanced)
 }
 
 // voids finds what is missing at nodes that rest on the floor, and books what the leak
@@ -343,7 +343,7 @@ func (r *run) voids(b *booking) {
 	}
 }
 
-func (r *run) axesNow(k int, unbalanced bool) {
+func (r *run) axesNow(unbalanced bool) {
 	s := &r.sample
 	dt := r.step.dt // 0 where a series starts before the last one ended: it is another one
 	r.state.begun = true

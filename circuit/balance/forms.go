@@ -70,7 +70,7 @@ func (s *Solver) norm(p Problem, x []float64, a aim, slopes bool) float64 {
 	} else {
 		p.Eval(x, s.rows, nil)
 	}
-	s.now.aim, s.now.slopes = a, slopes
+	s.now.slopes = slopes
 	if a.smooth || a.delta > 0 {
 		s.smoothResidual(x, a)
 	} else {

@@ -87,7 +87,6 @@ type Solver struct {
 
 // point tells what the workspace holds.
 type point struct {
-	aim    aim
 	norm   float64
 	slopes bool // s.j belongs to this point
 }
