@@ -151,25 +151,10 @@ func TestEngine(t *testing.T) {
 // its governor keeps the speed and fuel = k·PN − s·P; beyond it the speed rises until the drag
 // takes the power.
 func TestEngineOverrun(t *testing.T) {
-	text := `
-M1 engine; rated_power: 30 kW; speed: 1480 rpm
-P1 pump; displacement: 71 cm3/rev; case_share: 0; slip: 0; friction: 0; viscous: 0; drag: 0 N m; follows: drum; both_directions: yes
-LP1 pressure_source; pressure: 20 bar
-CV1 check; opens: 0 bar; nominal_drop: 0 bar
-CV2 check; opens: 0 bar; nominal_drop: 0 bar
-HM1 motor; axis: drum; hold: pump; displacement: 80 cm3/rev; case_share: 0; slip: 0; friction: 0; viscous: 0; drag: 0 N m
-- M1.shaft P1.shaft
-- LP1.P CV1.in CV2.in
-- P1.P HM1.A CV1.out
-- P1.S HM1.B CV2.out
-`
-	axes := []duty.Axis{{Name: "drum", Kind: duty.Rotary}}
+	text := fmt.Sprintf(winchOn, "M1 engine; rated_power: 30 kW; speed: 1480 rpm")
 	n := 1480 * rpm
 	for _, c := range []struct{ speed, fuel, over float64 }{{-20, 12e3 - 2.2*3e3, 1}, {-60, 0, 9e3 / (0.4 * 30e3 / 2.2)}, {40, 12e3 + 2.2*6e3, 1}} {
-		d := points("drum", 0.5, []float64{0, 1},
-			duty.Track{Of: "drum", What: duty.Speed, Values: []float64{c.speed, c.speed}},
-			duty.Track{Of: "drum", What: duty.Load, Values: []float64{150, 150}})
-		o := observe(t, text, axes, d)
+		o := observe(t, text, drumAxis, lowering(c.speed))
 		near(t, "drum", o.last(t, "HM1.w"), c.speed, 1e-9)
 		near(t, "engine", o.last(t, "M1.w"), n*c.over, 1e-9)
 		if got := o.last(t, "M1.fuel"); math.Abs(got-c.fuel) > 1e-3 {

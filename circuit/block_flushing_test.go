@@ -21,8 +21,6 @@ func hoist(load ...float64) *duty.Duty {
 		duty.Track{Of: "drum", What: duty.Load, Values: load})
 }
 
-var drumAxis = []duty.Axis{{Name: "drum", Kind: duty.Rotary}}
-
 // The low side stands at the charge pressure of 20 bar. Without override 4 bar are left
 // for the orifice: 10·√(4/5) = 8.9443 L/min; with 20 bar per 100 L/min
 // 0.05·q² + 0.2·q = 4 gives q = 7.1652 L/min (by hand).

@@ -69,23 +69,11 @@ func TestPowerLimitCountsFriction(t *testing.T) {
 // A pump that follows an axis moves it slower where the limit holds it, both ways over
 // centre; the drum turns at PL·η/T. Without losses η = 1.
 func TestPowerLimitOfFollower(t *testing.T) {
-	text := `
-M1 electric_motor; rated_power: 22 kW; efficiency: 0.93; speed: 1480 rpm
-P1 pump; displacement: 71 cm3/rev; case_share: 0; slip: 0; friction: 0; viscous: 0; drag: 0 N m; follows: drum; both_directions: yes; power_limit: 6 kW
-LP1 pressure_source; pressure: 20 bar
-CV1 check; opens: 0 bar; nominal_drop: 0 bar
-CV2 check; opens: 0 bar; nominal_drop: 0 bar
-HM1 motor; axis: drum; hold: pump; displacement: 80 cm3/rev; case_share: 0; slip: 0; friction: 0; viscous: 0; drag: 0 N m
-- M1.shaft P1.shaft
-- LP1.P CV1.in CV2.in
-- P1.P HM1.A CV1.out
-- P1.S HM1.B CV2.out
-`
-	axes := []duty.Axis{{Name: "drum", Kind: duty.Rotary}}
+	text := replaced(t, fmt.Sprintf(winchOn, "M1 electric_motor; rated_power: 22 kW; efficiency: 0.93; speed: 1480 rpm"), "both_directions: yes", "both_directions: yes; power_limit: 6 kW")
 	d := points("drum", 0.1, []float64{0, 0, 1, 1, 2, 2, 3},
 		duty.Track{Of: "drum", What: duty.Speed, Values: []float64{0, 60, 60, 20, 20, -60, -60}},
 		duty.Track{Of: "drum", What: duty.Load, Values: []float64{150, 150, 150, 150, 150, -150, -150}})
-	r := steady(t, text, axes, d)
+	r := steady(t, text, drumAxis, d)
 	for i, at := range r.t {
 		want := 0.0
 		switch {

@@ -259,7 +259,7 @@ func TestTrialCircuits(t *testing.T) {
 		{"C1", c1, ramAxis, ramDuty, 251.53288, 0, 17.13759, 8.76476},
 		{"C2", c2, ramAxis, ramDuty, 79.00013, 0, 8.42644, 8.25059},
 		{"C3", c3, trialAxes, bothDuty, 76.84041, 0, 9.45911, 3.43600},
-		{"C4", c4, []duty.Axis{{Name: "drum", Kind: duty.Rotary}}, drum, 179.20274, 38.64853, 19.42703, 20.40526},
+		{"C4", c4, drumAxis, drum, 179.20274, 38.64853, 19.42703, 20.40526},
 		{"C5", c5, ramAxis, ramDuty, 11.85354, 0.13603, 4.40348, 1.28521},
 	} {
 		t.Run(c.name, func(t *testing.T) {

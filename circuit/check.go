@@ -259,6 +259,15 @@ func (k *checker) takes(d *duty.Duty, b *Block, w duty.What) {
 // isPump reports whether a block is a pump or a service that its shaft drives alike.
 func isPump(b *Block) bool { return b.Kind == kindPump || b.Kind == kindSwitched }
 
+// delivers reports whether a block raises the pressure of oil: a pump, also one for charge.
+func delivers(b *Block) bool { return isPump(b) || b.Kind == kindChargePump }
+
+// displaces reports whether a block passes oil by turning, as all that has a displacement does.
+func displaces(b *Block) bool { return KindNamed(b.Kind).Param("displacement") != nil }
+
+// onShaft reports whether a block is such a machine and passes power through a shaft port.
+func onShaft(b *Block) bool { return displaces(b) && KindNamed(b.Kind).Port("shaft") != nil }
+
 // isPQ reports whether a block is a pump that takes set pressure and set flow.
 func isPQ(b *Block) bool {
 	return b.Kind == kindPump && follows(b) == "" && KindNamed(b.Kind).WordOf(b, "control") == "pq"

@@ -144,7 +144,7 @@ func (k *checker) fed(control *Block) {
 			return
 		}
 		for _, p := range n.ports {
-			if kind := k.c.Block(p.Block).Kind; (kind == kindPump || kind == kindSwitched || kind == kindChargePump) && p.Port != "D" && n.tank == "" {
+			if delivers(k.c.Block(p.Block)) && p.Port != "D" && n.tank == "" {
 				return
 			}
 		}

@@ -5,29 +5,27 @@ import "barlitre/circuit/duty"
 // safety gives the cautions that a drawing asks for.
 func (k *checker) safety() {
 	for _, b := range sorted(k.c.Blocks) {
-		switch b.Kind {
-		case kindAccumulator:
+		switch {
+		case b.Kind == kindAccumulator:
 			k.relieved(b, "P", "the oil side")
 			k.say(Caution, b, "", "it stays charged when the machine is off: before any work it must be shut off and discharged, and zero read on a gauge; it needs its own shut-off, relief, discharge and gauge, and the inspections of the local rules for pressure vessels")
-		case kindPump, kindSwitched:
+		case isPump(b):
 			k.relieved(b, "P", "its outlet")
 			if n := k.of[PortRef{b.ID, "S"}]; n != nil && n.tank == "" && KindNamed(b.Kind).WordOf(b, "both_directions") == "yes" {
 				k.relieved(b, "S", "its other side")
 			}
-		case kindCylinder:
+		case b.Kind == kindCylinder:
 			k.relieved(b, "A", "the bore side")
 			k.relieved(b, "B", "the rod side")
 			k.suspended(b)
-		case kindDoubleRod, kindPlunger:
+		case movesAlong(b.Kind):
 			k.relieved(b, "A", "side A")
 			k.relieved(b, "B", "side B")
 			k.suspended(b)
-		case kindHydraulicMotor:
-			if b.Word("axis") != "" {
-				k.relieved(b, "A", "side A")
-				k.relieved(b, "B", "side B")
-				k.suspended(b)
-			}
+		case b.Kind == kindHydraulicMotor && b.Word("axis") != "":
+			k.relieved(b, "A", "side A")
+			k.relieved(b, "B", "side B")
+			k.suspended(b)
 		}
 	}
 }

@@ -58,7 +58,7 @@ func TestGearboxesInARow(t *testing.T) {
 // A lowered load drives the pump, and the pump the motor through the gearbox.
 func TestGearboxDrivenBackwards(t *testing.T) {
 	text := strings.Replace(c4, "- M1.shaft P1.shaft CP1.shaft", "G1 gearbox; ratio: 1; efficiency: 90 %\n- M1.shaft G1.in\n- G1.out P1.shaft CP1.shaft", 1)
-	axes := []duty.Axis{{Name: "drum", Kind: duty.Rotary}}
+	axes := drumAxis
 	d := points("drum", 0.05, []float64{0, 1, 8, 9, 12, 13, 20, 21, 24},
 		duty.Track{Of: "drum", What: duty.Speed, Values: []float64{0, 60, 60, 0, 0, -60, -60, 0, 0}},
 		duty.Track{Of: "drum", What: duty.Load, Values: []float64{180, 180, 180, 180, 180, 180, 180, 180, 180}})

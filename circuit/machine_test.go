@@ -36,7 +36,7 @@ var drumDuty = points("drum", 0.1, []float64{0, 1, 5, 6, 8, 9, 12, 13, 16, 17, 2
 // of the law in package machines, which is compared with published values there.
 func TestMachineLawInTheBalance(t *testing.T) {
 	oil := Conditions{Density: 870, Viscosity: 0.040, BulkModulus: 1.5e9, Air: 0.01}
-	k, found := Compile(build(t, allTerms(c4)), []duty.Axis{{Name: "drum", Kind: duty.Rotary}}, drumDuty)
+	k, found := Compile(build(t, allTerms(c4)), drumAxis, drumDuty)
 	if k == nil {
 		t.Fatal(found)
 	}
@@ -96,7 +96,7 @@ func TestRandomMachinesCloseWithAllTerms(t *testing.T) {
 		text, axes, d, oil := generate(seed, tame)
 		if seed%4 == 3 {
 			text, d = closedCircuit(r)
-			axes = []duty.Axis{{Name: "drum", Kind: duty.Rotary}}
+			axes = drumAxis
 		}
 		oil.Air = 0.01 * float64(seed%3)
 		k, found := Compile(build(t, allTerms(text)), axes, d)
@@ -174,7 +174,7 @@ func TestMapInTheBalance(t *testing.T) {
 	c := build(t, c4)
 	pump := c.Block("P1")
 	pump.Fit, pump.Words["points"], pump.Words["points_as"] = fit, Word{Text: "pump.csv"}, Word{Text: "map"}
-	k, found := Compile(c, []duty.Axis{{Name: "drum", Kind: duty.Rotary}}, drumDuty)
+	k, found := Compile(c, drumAxis, drumDuty)
 	if k == nil {
 		t.Fatal(found)
 	}

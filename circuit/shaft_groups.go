@@ -5,7 +5,7 @@ import "barlitre/machines/units"
 // ShaftGroup is the machines on shafts that turn together, two or more.
 type ShaftGroup struct {
 	Name    string   // of the shaft: its first port in reading order
-	Blocks  []string // pumps, services, hydraulic motors and flow dividers on it, by id
+	Blocks  []string // pumps, services and hydraulic motors on it, by id
 	Signals []int    // their shaft powers, > 0 taken from the shaft
 }
 
@@ -29,7 +29,7 @@ func (c *Compiled) ShaftGroups() []ShaftGroup {
 			first = first && m.id >= n.id
 			for _, p := range m.ports {
 				b := c.circuit.Block(p.Block)
-				if i, ok := power[b.ID]; ok && (isPump(b) || b.Kind == kindChargePump || b.Kind == kindHydraulicMotor || b.Kind == kindFlowDivider) {
+				if i, ok := power[b.ID]; ok && onShaft(b) {
 					g.Blocks, g.Signals = append(g.Blocks, b.ID), append(g.Signals, i)
 				}
 			}

@@ -45,7 +45,7 @@ func watchRun(t *testing.T, text string, axes []duty.Axis, d *duty.Duty, oil Con
 // Flow, torque and losses of the block are those of the law in package machines, in all four quadrants.
 func TestSwitchedLawInTheBalance(t *testing.T) {
 	oil := Conditions{Density: 870, Viscosity: 0.030, BulkModulus: 1.5e9, Air: 0.01}
-	w := watchRun(t, switchedWinch, []duty.Axis{{Name: "drum", Kind: duty.Rotary}}, drumDuty, oil)
+	w := watchRun(t, switchedWinch, drumAxis, drumDuty, oil)
 	law, ok := SwitchedLaw(w.c.circuit.Block("P1"))
 	if !ok || law.N != 12 || law.Idle != 1e5 || law.Switch != 0.3 {
 		t.Fatalf("law of the block %+v", law)

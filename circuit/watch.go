@@ -118,14 +118,14 @@ func (c *Compiled) NewWatch(params []float64, s *duty.Series) *Watch {
 	for _, b := range sorted(c.circuit.Blocks) {
 		w.drive(b, get(b.ID+".w"), get(b.ID+".T"))
 		w.service(b, get)
-		switch b.Kind {
-		case kindElectricMotor:
+		switch {
+		case b.Kind == kindElectricMotor:
 			w.motors = append(w.motors, w.motor(b, get))
-		case kindConverter:
+		case b.Kind == kindConverter:
 			w.links = append(w.links, linkWatch{b: b, resistor: w.channelOf(b, "brake resistor")})
-		case kindRelief:
+		case b.Kind == kindRelief:
 			w.reds = append(w.reds, reliefWatch{b: b, flow: get(b.ID + ".P.q"), p: get(b.ID + ".P.p")})
-		case kindPump, kindSwitched, kindChargePump, kindHydraulicMotor, kindFlowDivider:
+		case displaces(b):
 			m := machineWatch{b: b, w: get(b.ID + ".w"), pP: get(b.ID + ".P.p"), pS: get(b.ID + ".S.p"), max: math.Inf(1), slow: math.Inf(1)}
 			if b.Kind == kindHydraulicMotor {
 				m.pP, m.pS = get(b.ID+".A.p"), get(b.ID+".B.p")

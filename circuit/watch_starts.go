@@ -125,7 +125,7 @@ func (r reachOf) available(b *Block, port string) float64 {
 // source is the pressure a block can give at a port, +Inf where only valves limit it.
 func (r reachOf) source(b *Block, port string) (float64, bool) {
 	switch {
-	case b.Kind == kindPump && (port == "P" || (port == "S" && b.Word("both_directions") == "yes")):
+	case isPump(b) && (port == "P" || (port == "S" && b.Word("both_directions") == "yes")):
 		if c := KindNamed(b.Kind).WordOf(b, "control"); c == "pressure" || c == "pq" {
 			if _, ok := b.Values["set_pressure"]; ok {
 				return r.w.value(b, "set_pressure"), true
@@ -165,7 +165,7 @@ func (r reachOf) relieved(n *net) float64 {
 
 // upstream lists the ports that oil at a port of a block may come from.
 func upstream(b *Block, port string) (from []string) {
-	if b.Kind == kindPump || b.Kind == kindChargePump || b.Kind == kindRelief || b.Kind == kindHydraulicMotor || movesAlong(b.Kind) {
+	if onShaft(b) || b.Kind == kindRelief || movesAlong(b.Kind) {
 		return nil
 	}
 	for in, outs := range outlets[b.Kind] {

@@ -22,7 +22,7 @@ func pump57(t *testing.T) []Point {
 	}
 	f, err := os.Open(filepath.Join(dir, "piston_pump_57cm3_points.csv"))
 	if err != nil {
-		t.Skip(err)
+		t.Fatal(err)
 	}
 	defer f.Close()
 	rows, err := csv.NewReader(f).ReadAll()
@@ -33,7 +33,9 @@ func pump57(t *testing.T) []Point {
 	for i, r := range rows[1:] {
 		v := make([]float64, len(r))
 		for j := range r {
-			v[j], _ = strconv.ParseFloat(r[j], 64)
+			if v[j], err = strconv.ParseFloat(r[j], 64); err != nil {
+				t.Fatal(err)
+			}
 		}
 		out = append(out, Point{W: v[1] * units.RPM, E: v[2] / 57, DP: v[3] * 1e6, Q: v[4] * lpm, T: v[5], Line: i + 2})
 	}
