@@ -3,6 +3,8 @@ package audit
 import (
 	"fmt"
 	"math"
+	"slices"
+	"strings"
 
 	"barlitre/circuit"
 	"barlitre/machines/units"
@@ -16,10 +18,36 @@ func (c *CircuitRun) remarks() []circuit.Finding {
 			out = append(out, c.dutyRemarks(d)...)
 		}
 	}
+	out = append(out, c.shutIn()...)
 	if c.Heat.Fault != "" {
 		out = append(out, circuit.Finding{Level: circuit.Warns, Circuit: c.Circuit.Name, Text: c.Heat.Fault})
 	}
 	return out
+}
+
+// shutIn notes, once for all duties, where the pressure shown at standstill is a convention.
+func (c *CircuitRun) shutIn() []circuit.Finding {
+	var loose []string
+	for _, d := range c.Duties {
+		for _, n := range d.Certificate.Loose {
+			if !slices.Contains(loose, n) {
+				loose = append(loose, n)
+			}
+		}
+	}
+	if len(loose) == 0 {
+		return nil
+	}
+	var places []string
+	for _, p := range c.Circuit.Pockets(loose) {
+		place := circuit.Names(p.Nodes)
+		if len(p.By) > 0 {
+			place += " (shut in by " + circuit.Names(p.By) + ")"
+		}
+		places = append(places, place)
+	}
+	return []circuit.Finding{{Level: circuit.Note, Circuit: c.Circuit.Name, Text: "while axes stand, leakage alone sets the pressure at " + strings.Join(places, "; ") +
+		": what is shown there is a convention. In the machine it drifts, and oil that is shut in can stay under pressure long after the pump has stopped: prove it zero before any work"}}
 }
 
 func (c *CircuitRun) dutyRemarks(d *DutyRun) []circuit.Finding {

@@ -75,6 +75,7 @@ type run struct {
 	behind   []float64 // demand of axes that lagged behind it at the last point, else 0
 	haste    float64   // by how much axes move faster than asked; see approach
 	scales
+	loose looseWatch
 	hot
 }
 
@@ -166,7 +167,9 @@ func (r *run) all(ctx context.Context, st State, from, end int, to Receiver) (St
 			return fmt.Errorf("%w: %d time steps in a row, the last at %g s; %s", ErrLost, lost, r.series.T[k], r.cert.Unsolved[0])
 		}
 		r.report(!res.Solved())
-		if !res.Solved() {
+		if res.Solved() {
+			r.lookLoose()
+		} else {
 			copy(x, good)
 		}
 		return to.Sample(&r.sample)

@@ -214,6 +214,9 @@ func (c Certificate) plus(o Certificate) Certificate {
 		c.Worst, c.WorstAt = o.Worst, o.WorstAt
 	}
 	c.Force = math.Max(c.Force, o.Force)
+	for _, n := range o.Loose {
+		c.Loose = with(c.Loose, n)
+	}
 	for _, u := range o.Unsolved {
 		if len(c.Unsolved) < 8 {
 			c.Unsolved = append(c.Unsolved, u)

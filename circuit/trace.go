@@ -38,9 +38,6 @@ type Signal struct {
 	What  string // "p", "q", "v", "w", "F", "T", "e", "u", "shaft", "electric", "fuel"
 	Title string // for plots: "pressure at P"
 	Dim   units.Dim
-	// Undetermined is set for pressures that the circuit does not determine at
-	// standstill, behind closed valves; what is shown then is a convention.
-	Chamber bool
 }
 
 // AxisNow is the state of one axis at a time step.
@@ -134,6 +131,9 @@ type Certificate struct {
 	// Unsolved lists the first few steps that stayed unbalanced; Unbalanced counts them all.
 	Unbalanced int
 	Unsolved   []Unsolved
+	// Loose names the nodes, in order, that leakage alone gives a pressure while axes stand,
+	// shut in by closed valves: what is shown there is a convention. See Circuit.Pockets.
+	Loose []string
 	// Sequential names what made a long duty be balanced in one go on one processor: what
 	// the circuit remembers from step to step. "" for others and for short duties.
 	Sequential string

@@ -114,26 +114,9 @@ func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
 // met with a proximal shift, growing once.
 func (s *Solver) direction(x []float64, a aim) bool {
 	free := s.open(x, a)
-	n := len(free)
-	f := s.f
-	f.n = n
-	b, out := s.xt[:n], f.out[:n] // s.xt is free between steps
+	f, b, out := s.f, s.xt[:len(free)], s.f.out[:len(free)] // s.xt is free between steps
 	for _, shift := range [...]float64{0, 1e-6, 1e-2} {
-		clear(f.a[:n*n])
-		for k, i := range free {
-			b[k] = s.r[i]
-			f.a[k*n+k] = s.rim[i] + s.steep[i]*(a.delta+shift)
-		}
-		for e, v := range s.j.val[firstEntry:] {
-			i, c := s.j.row[e+firstEntry], s.j.col[e+firstEntry]
-			switch k, l := s.place[i], s.place[c]; {
-			case k < 0:
-			case l < 0:
-				b[k] += s.steep[i] * v * s.dx[c]
-			default:
-				f.a[int(k)*n+int(l)] += s.steep[i] * v
-			}
-		}
+		s.dense(free, b, a.delta+shift)
 		if piv := f.factor(); piv >= tinyPivot {
 			f.solve(b, out)
 			for k, i := range free {
@@ -146,6 +129,28 @@ func (s *Solver) direction(x []float64, a aim) bool {
 		}
 	}
 	return false
+}
+
+// dense lays the matrix of the open unknowns out in s.f, with a shift on its diagonal, and
+// what is to be made up for, known steps included, in b.
+func (s *Solver) dense(free []int32, b []float64, shift float64) {
+	f, n := s.f, len(free)
+	f.n = n
+	clear(f.a[:n*n])
+	for k, i := range free {
+		b[k] = s.r[i]
+		f.a[k*n+k] = s.rim[i] + s.steep[i]*shift
+	}
+	for e, v := range s.j.val[firstEntry:] {
+		i, c := s.j.row[e+firstEntry], s.j.col[e+firstEntry]
+		switch k, l := s.place[i], s.place[c]; {
+		case k < 0:
+		case l < 0:
+			b[k] += s.steep[i] * v * s.dx[c]
+		default:
+			f.a[int(k)*n+int(l)] += s.steep[i] * v
+		}
+	}
 }
 
 // open lists the unknowns that are not on a bound by themselves, with the weights of
