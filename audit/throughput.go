@@ -28,9 +28,8 @@ var throughputKinds = map[string]struct {
 
 // passage is the circuit.Receiver that sums up throughputs.
 type passage struct {
+	*integrals
 	through []passing
-	t       float64
-	begun   bool
 }
 
 type passing struct {
@@ -38,9 +37,10 @@ type passing struct {
 	signal      int
 	sign, rated float64
 	losses      []int // channels
-	last        [4]float64
-	sum         [4]float64 // integrals of the powers in and out, and of the time that it runs, and at part load
 }
+
+// passingFigures are integrated for each: the powers in and out, that it runs, and that it runs at part load.
+const passingFigures = 4
 
 func newPassage(c *circuit.Circuit, signals []circuit.Signal, channels []circuit.Channel) *passage {
 	out := &passage{}
@@ -68,28 +68,17 @@ func newPassage(c *circuit.Circuit, signals []circuit.Signal, channels []circuit
 			out.through = append(out.through, p)
 		}
 	}
+	out.integrals = newIntegrals(passingFigures*len(out.through), func(s *circuit.Sample, to []float64) {
+		for i := range out.through {
+			now := out.through[i].at(s)
+			copy(to[passingFigures*i:], now[:])
+		}
+	})
 	return out
 }
 
-// Sample books by the trapezoid rule.
-func (o *passage) Sample(s *circuit.Sample) error {
-	dt := s.T - o.t
-	for i := range o.through {
-		p := &o.through[i]
-		now := p.at(s)
-		if o.begun && dt > 0 {
-			for k := range p.sum {
-				p.sum[k] += dt * (p.last[k] + now[k]) / 2
-			}
-		}
-		p.last = now
-	}
-	o.t, o.begun = s.T, true
-	return nil
-}
-
 // at returns the powers that enter and leave, and 1 while it runs, and 1 while it does so at part load.
-func (p *passing) at(s *circuit.Sample) (now [4]float64) {
+func (p *passing) at(s *circuit.Sample) (now [passingFigures]float64) {
 	loss, one := 0.0, p.sign*s.Signals[p.signal]
 	for _, k := range p.losses {
 		loss += s.Power[k]
@@ -109,34 +98,12 @@ func (p *passing) at(s *circuit.Sample) (now [4]float64) {
 	return now
 }
 
-// Part sums up the time steps after before, and the time from it to the first of them.
-func (o *passage) Part(_, _ int, before *circuit.Sample) circuit.Receiver {
-	p := &passage{}
-	for _, q := range o.through {
-		q.sum = [4]float64{}
-		p.through = append(p.through, q)
-	}
-	if before != nil {
-		_ = p.Sample(before) // never fails, and books nothing yet
-	}
-	return p
-}
-
-// Join adds what passed in a part.
-func (o *passage) Join(part circuit.Receiver) error {
-	for i, q := range part.(*passage).through {
-		for k, v := range q.sum {
-			o.through[i].sum[k] += v
-		}
-	}
-	return nil
-}
-
 // all lists the throughputs by block.
 func (o *passage) all() map[string]Throughput {
 	out := map[string]Throughput{}
-	for _, p := range o.through {
-		x := Throughput{In: p.sum[0], Out: p.sum[1], Running: p.sum[2], Part: p.sum[3]}
+	for i, p := range o.through {
+		sum := o.sum[passingFigures*i:]
+		x := Throughput{In: sum[0], Out: sum[1], Running: sum[2], Part: sum[3]}
 		if math.IsNaN(p.rated) {
 			x.Part = math.NaN()
 		}
