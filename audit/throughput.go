@@ -17,13 +17,18 @@ type Throughput struct {
 // PartLoad is the share of the rated power below which a drive counts as being at part load (our choice).
 const PartLoad = 0.3
 
-// throughputKinds have one side that a signal tells the power of; sign is 1 where power that enters there is positive.
-var throughputKinds = map[string]struct {
-	signal string
-	sign   float64
-}{
-	"pump": {"shaft", 1}, "charge_pump": {"shaft", 1}, "motor": {"shaft", 1}, "switched_machine": {"shaft", 1},
-	"electric_motor": {"shaft", -1}, "engine": {"shaft", -1}, "converter": {"electric", 1},
+// countedSide names the signal that tells the power at one side of a machine or drive; sign is 1 where power that enters
+// there is positive. It is not ok for a block whose throughput does not count.
+func countedSide(b *circuit.Block) (signal string, sign float64, ok bool) {
+	switch b.Passes() {
+	case circuit.PumpShaft, circuit.HydraulicMotor:
+		return "shaft", 1, true
+	case circuit.PrimeMover:
+		return "shaft", -1, true
+	case circuit.Inverter:
+		return "electric", 1, true
+	}
+	return "", 0, false
 }
 
 // passage is the circuit.Receiver that sums up throughputs.
@@ -46,16 +51,16 @@ func newPassage(c *circuit.Circuit, signals []circuit.Signal, channels []circuit
 	out := &passage{}
 	for i := range c.Blocks {
 		b := &c.Blocks[i]
-		kind, ok := throughputKinds[b.Kind]
+		counted, sign, ok := countedSide(b)
 		if !ok {
 			continue
 		}
-		p := passing{block: b.ID, signal: -1, sign: kind.sign, rated: math.NaN()}
+		p := passing{block: b.ID, signal: -1, sign: sign, rated: math.NaN()}
 		if v, given := b.Values["rated_power"]; given {
 			p.rated = v.SI
 		}
 		for k, s := range signals {
-			if s.Block == b.ID && s.What == kind.signal && s.Port == "" {
+			if s.Block == b.ID && s.What == counted && s.Port == "" {
 				p.signal = k
 			}
 		}
