@@ -42,14 +42,9 @@ func parseAudit(args []string, errs io.Writer) (auditCall, error) {
 	f.StringVar(&c.csv, "csv", "", "write every time step as CSV into the folder `DIR`")
 	f.StringVar(&c.pdf, "pdf", "", "write the report to `OUT`; with several audit files a folder")
 	system := f.String("units", "metric", "units of the text and the report: `metric`, us or si")
-	for rest := args; len(rest) > 0; { // options may stand before and after files
-		if err := f.Parse(rest); err != nil {
-			return c, err
-		}
-		if rest = f.Args(); len(rest) > 0 {
-			c.files = append(c.files, rest[0])
-			rest = rest[1:]
-		}
+	var err error
+	if c.files, err = parseMixed(f, args); err != nil {
+		return c, err
 	}
 	switch *system {
 	case "metric":

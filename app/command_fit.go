@@ -44,20 +44,16 @@ func parseFit(args []string, errs io.Writer) (fitCall, error) {
 	quantity("viscosity", &c.fluid.Mu, units.DynamicViscosity, "dynamic viscosity of the oil while it was measured; default 26 mPa s, ISO VG 46 at 50 C")
 	quantity("bulk", &c.fluid.Bulk, units.Pressure, "bulk modulus of that oil; default 1.4 GPa")
 	f.StringVar(&c.png, "png", "", "draw the efficiency map and what the fit leaves as pictures into the folder `DIR`")
-	for rest := args; len(rest) > 0; { // options may stand before and after the file
-		if err := f.Parse(rest); err != nil {
-			return c, err
-		}
-		if rest = f.Args(); len(rest) > 0 {
-			if c.file != "" {
-				return c, errors.New("name one file of measured points")
-			}
-			c.file, rest = rest[0], rest[1:]
-		}
-	}
-	if c.file == "" {
+	files, err := parseMixed(f, args)
+	switch {
+	case err != nil:
+		return c, err
+	case len(files) == 0:
 		return c, errors.New("name a CSV file of measured points")
+	case len(files) > 1:
+		return c, errors.New("name one file of measured points")
 	}
+	c.file = files[0]
 	return c, nil
 }
 
@@ -83,7 +79,7 @@ func fit(args []string, out, errs io.Writer) int {
 	}
 	printFit(out, c, measured, full, f)
 	if c.png != "" {
-		if err := drawFit(c.png, strings.TrimSuffix(filepath.Base(c.file), filepath.Ext(c.file)), f); err != nil {
+		if err := drawFit(c.png, baseName(c.file), f); err != nil {
 			fmt.Fprintln(errs, "barlitre fit:", err)
 			return exitUnreadable
 		}

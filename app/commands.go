@@ -1,6 +1,7 @@
 package main
 
 import (
+	"flag"
 	"fmt"
 	"io"
 	"os"
@@ -72,4 +73,17 @@ func usage(w io.Writer) {
 		fmt.Fprintf(w, "  barlitre %s %s\n      %s\n", c.name, c.args, c.text)
 	}
 	fmt.Fprintln(w, "\nExit codes: 0 done; 1 a circuit cannot be solved; 2 a file cannot be read or written; 3 a time step stayed unbalanced.")
+}
+
+// parseMixed parses options that may stand before and after the names of files, and returns the names.
+func parseMixed(f *flag.FlagSet, args []string) (files []string, err error) {
+	for rest := args; len(rest) > 0; {
+		if err := f.Parse(rest); err != nil {
+			return files, err
+		}
+		if rest = f.Args(); len(rest) > 0 {
+			files, rest = append(files, rest[0]), rest[1:]
+		}
+	}
+	return files, nil
 }

@@ -105,6 +105,11 @@ func (b *Balance) WorkPositive() Split {
 	return s
 }
 
+// offMains reports whether all that is drawn is the fuel of engines.
+func (b *Balance) offMains() bool {
+	return b.Fuel.Total() > 0 && b.SupplyIn.Total()-b.Fuel.Total() <= 1e-9*b.Fuel.Total() && b.Returned.Total() == 0
+}
+
 // WorkNegative returns the work taken from loads that drive [J], <= 0.
 func (b *Balance) WorkNegative() Split {
 	var s Split

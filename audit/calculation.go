@@ -168,7 +168,7 @@ func (s *Solution) lossOfYear(p printer, c *CircuitRun, block, kind string) stri
 	e = nothing(e, c.Year.Drawn.Total())
 	text := c.sum(p, func(b *Balance) float64 {
 		e, _ := lossIn(b.Losses, block, kind)
-		return nothing(e, b.SupplyIn.Total())
+		return e
 	})
 	return joined([]string{text + " = " + p.kWh(e), s.inMoney(p, c, e)})
 }
@@ -207,7 +207,7 @@ func (s *Solution) termOfYear(p printer, c *CircuitRun, row EnergyRow) Calculati
 	if of == nil || c.Year == nil {
 		return Calculation{}
 	}
-	text := c.sum(p, func(b *Balance) float64 { return nothing(of(b).Total(), b.SupplyIn.Total()) })
+	text := c.sum(p, func(b *Balance) float64 { return of(b).Total() })
 	return Calculation{yearFormula, joined([]string{text + " = " + p.kWh(row.Energy.Total()), s.inMoney(p, c, row.Energy.Total())}),
 		"balance of each duty; hours and price from " + fromFile}
 }

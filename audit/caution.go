@@ -8,6 +8,7 @@ import (
 	"unicode/utf8"
 
 	"barlitre/circuit"
+	"barlitre/circuit/duty"
 	"barlitre/machines/units"
 )
 
@@ -100,17 +101,10 @@ type sayCaution func(block, topic, format string, args ...any)
 
 // loadCautions are about loads that hang, press or drive.
 func (c *CircuitRun) loadCautions(say sayCaution) {
-	held, driven := false, false
-	for _, d := range c.Duties {
-		if b := d.Balance; b != nil {
-			held = held || b.Seconds.Holding > 0
-			driven = driven || b.WorkNegative().Total() < 0
-		}
-	}
 	for i := range c.Circuit.Blocks {
 		b := &c.Circuit.Blocks[i]
 		axis := b.Word("axis")
-		if axis == "" || !held && !driven {
+		if axis == "" || !c.mayFall(axis) {
 			continue
 		}
 		text := "A load stands on or drives axis %s. This audit takes for granted that %s holds it and does not show that it does. " +
@@ -120,6 +114,22 @@ func (c *CircuitRun) loadCautions(say sayCaution) {
 		}
 		say(b.ID, "Suspended load", text, axis, holder(b.Word("hold")))
 	}
+}
+
+// mayFall reports whether a load drives an axis in a duty that was run, or stands on it. Where the duty does not give
+// its load, it may stand on any axis while the machine holds.
+func (c *CircuitRun) mayFall(axis string) bool {
+	return slices.ContainsFunc(c.Duties, func(d *DutyRun) bool {
+		switch {
+		case d.Balance == nil:
+			return false
+		case d.Balance.axis(axis).Negative.Total() < 0:
+			return true
+		case d.Duty.Track(axis, duty.Load) == nil:
+			return d.Balance.Seconds.Holding > 0
+		}
+		return d.Duty.StandsUnder(duty.Axis{Name: axis}, 0.01) // as the check of circuits: what is left of a ramp is no load
+	})
 }
 
 // holder names what holds an axis.

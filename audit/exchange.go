@@ -19,38 +19,29 @@ type Exchange struct {
 	Energy float64 // J
 }
 
-// exchanges is the receiver that adds them up, trapezoid rule.
+// exchanges is the circuit.Receiver that adds them up.
 type exchanges struct {
+	*integrals
 	groups []circuit.ShaftGroup
-	sum    []float64
-	last   []float64
-	t      float64
-	begun  bool
 }
 
 func newExchanges(c *circuit.Compiled) *exchanges {
 	g := c.ShaftGroups()
-	return &exchanges{groups: g, sum: make([]float64, len(g)), last: make([]float64, len(g))}
+	return &exchanges{groups: g, integrals: newIntegrals(len(g), func(s *circuit.Sample, to []float64) {
+		for i := range g {
+			to[i] = exchanged(s, g[i].Signals)
+		}
+	})}
 }
 
-// Sample takes one time step.
-func (x *exchanges) Sample(s *circuit.Sample) error {
-	dt := s.T - x.t
-	if !x.begun {
-		dt = 0
+// exchanged is what machines pass to one another at a time step [W]; signals are the powers they take from their shaft.
+func exchanged(s *circuit.Sample, signals []int) float64 {
+	taken, given := 0.0, 0.0
+	for _, k := range signals {
+		p := s.Signals[k]
+		taken, given = taken+math.Max(p, 0), given+math.Max(-p, 0)
 	}
-	x.t, x.begun = s.T, true
-	for i, g := range x.groups {
-		taken, given := 0.0, 0.0
-		for _, k := range g.Signals {
-			p := s.Signals[k]
-			taken, given = taken+math.Max(p, 0), given+math.Max(-p, 0)
-		}
-		now := math.Min(taken, given)
-		x.sum[i] += dt * (now + x.last[i]) / 2
-		x.last[i] = now
-	}
-	return nil
+	return math.Min(taken, given)
 }
 
 // list returns those where something passed, as the mean of the cycles.

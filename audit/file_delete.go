@@ -127,17 +127,24 @@ func (f *File) dropTracks(d *draft, ci int, id string) error {
 	if f.elsewhere(ci, id) || f.isAxis(id) {
 		return nil
 	}
+	return f.eachTrackList(d, id, func(of *yaml.Node, key string) error {
+		keys := mappingKeys(child(of, key))
+		return d.cut(of, key, false, func(k int) bool { return ofTrack(keys[k]) == id })
+	})
+}
+
+// eachTrackList edits the lists, by their keys, that name tracks of an axis or block in the duties that have any.
+func (f *File) eachTrackList(d *draft, of string, edit func(duty *yaml.Node, key string) error) error {
 	for i, du := range f.Duties {
-		if !slices.ContainsFunc(du.Tracks, func(t duty.Track) bool { return t.Of == id }) {
+		if !slices.ContainsFunc(du.Tracks, func(t duty.Track) bool { return t.Of == of }) {
 			continue
 		}
-		if err := f.headsFromFile(d, i, id); err != nil {
+		if err := f.headsFromFile(d, i, of); err != nil {
 			return err
 		}
 		for _, key := range []string{"points", "columns"} {
-			keys := mappingKeys(child(d.duty(i), key))
-			if err := d.cut(d.duty(i), key, false, func(k int) bool { return ofTrack(keys[k]) == id }); err != nil {
-				return fmt.Errorf("duty %q, tracks of %s: %w", du.Name, id, err)
+			if err := edit(d.duty(i), key); err != nil {
+				return fmt.Errorf("duty %q, tracks of %s: %w", du.Name, of, err)
 			}
 		}
 	}

@@ -8,7 +8,6 @@ import (
 	"gopkg.in/yaml.v3"
 
 	"barlitre/circuit"
-	"barlitre/circuit/duty"
 )
 
 // Rename gives a block of a circuit another id, in its lines and groups and in the
@@ -90,20 +89,9 @@ func (d *draft) renamed(ci int, old, id string) ([]splice, error) {
 // renameTracks gives the tracks of a block or axis another name; with keep the old
 // ones stay beside them.
 func (f *File) renameTracks(d *draft, old, id string, keep bool) error {
-	for i, du := range f.Duties {
-		if !slices.ContainsFunc(du.Tracks, func(t duty.Track) bool { return t.Of == old }) {
-			continue
-		}
-		if err := f.headsFromFile(d, i, old); err != nil {
-			return err
-		}
-		for _, key := range []string{"points", "columns"} {
-			if err := d.renameKeys(child(d.duty(i), key), old, id, keep); err != nil {
-				return fmt.Errorf("duty %q, tracks of %s: %w", du.Name, old, err)
-			}
-		}
-	}
-	return nil
+	return f.eachTrackList(d, old, func(duty *yaml.Node, key string) error {
+		return d.renameKeys(child(duty, key), old, id, keep)
+	})
 }
 
 // renameKeys renames the tracks of one list of tracks.

@@ -167,11 +167,11 @@ func (s *Solution) fuelAssumption(p printer) string {
 	return text + " Its price is not given."
 }
 
-// savedNumbers are the numbers of a saving: one factor times the energy saved, or where fuel is burnt, the
+// saving opens a saving: a factor times the energy saved, or where fuel is burnt, which has a factor of its own, the
 // difference of both years.
-func (s *Solution) savedNumbers(c *Comparison, one, difference string) string {
+func (c *Comparison) saving(symbol, factor, one, difference, source string) Calculation {
 	if burns(c.Base.Circuit) || burns(c.Proposal.Circuit) {
-		return difference
+		return Calculation{"Δ" + symbol + " = " + symbol + "_before − " + symbol + "_after", difference, source}
 	}
-	return one
+	return Calculation{"Δ" + symbol + " = ΔE · " + factor, one, source}
 }

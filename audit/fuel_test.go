@@ -154,3 +154,32 @@ func TestStartsAreBooked(t *testing.T) {
 		t.Errorf("%v, %g", err, f.FuelPrice.SI)
 	}
 }
+
+// The report of a circuit that burns fuel denies no money that it names, and averages nothing that no meter sees.
+func TestFuelReportAgreesWithItself(t *testing.T) {
+	s := solvedText(t, engineAudit("fuel_price: 1.60 EUR/L", engineDrive, "keep"))
+	text := fmt.Sprint(s.Report(0))
+	if strings.Contains(text, "no money is shown") || !strings.Contains(text, "cost of energy a year") {
+		t.Errorf("money named and denied: %s", text)
+	}
+	c := s.Circuits[0]
+	mean := figureNamed(peakFigures(printer{}, c.Duties[0]), "15-minute mean of power drawn")
+	if mean.Text != "n/a" || known(demandFigure(printer{}, c).Value) {
+		t.Errorf("the mains are not used, and their mean is %s", mean.Text)
+	}
+	pair := &Comparison{Base: c, Proposal: c}
+	if got := pair.saving("K", "price", "one", "difference", ""); got.Formula != "ΔK = K_before − K_after" || got.Numbers != "difference" {
+		t.Errorf("saving of fuel: %+v", got)
+	}
+	e := solvedText(t, engineAudit("co2: 0.1 kg/kWh", "kind: electric_motor, rated_power: 22 kW, efficiency_class: IE3", "keep"))
+	if text := fmt.Sprint(e.Report(0)); !strings.Contains(text, "so no money is shown") {
+		t.Error("an electric circuit without a price does not say so")
+	}
+	pair = &Comparison{Base: e.Circuits[0], Proposal: e.Circuits[0]}
+	if got := pair.saving("K", "price", "one", "difference", ""); got.Formula != "ΔK = ΔE · price" || got.Numbers != "one" {
+		t.Errorf("saving of electricity: %+v", got)
+	}
+	if m := demandFigure(printer{}, e.Circuits[0]); !(m.Value > 0) {
+		t.Errorf("mean of an electric circuit: %v", m.Value)
+	}
+}

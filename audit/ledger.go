@@ -313,22 +313,16 @@ func modeOf(s *circuit.Sample) mode {
 // ShaftSignals finds the signals whose sum is the shaft power of the prime movers:
 // those of the electric motors and engines, or, where none reports one, of all pumps.
 func ShaftSignals(c *circuit.Circuit, signals []circuit.Signal) []int {
-	of := func(kinds ...string) (out []int) {
+	of := func(p circuit.Passage) (out []int) {
 		for i, s := range signals {
-			b := c.Block(s.Block)
-			if s.What != "shaft" || s.Dim != units.Power || b == nil {
-				continue
-			}
-			for _, k := range kinds {
-				if b.Kind == k {
-					out = append(out, i)
-				}
+			if b := c.Block(s.Block); s.What == "shaft" && s.Dim == units.Power && b != nil && b.Passes() == p {
+				out = append(out, i)
 			}
 		}
 		return out
 	}
-	if m := of("electric_motor", "engine"); len(m) > 0 {
+	if m := of(circuit.PrimeMover); len(m) > 0 {
 		return m
 	}
-	return of("pump", "switched_machine", "charge_pump")
+	return of(circuit.PumpShaft)
 }

@@ -18,9 +18,8 @@ type Operating struct {
 
 // operation is the circuit.Receiver that sums up the states of the machines of a circuit, those alike together.
 type operation struct {
+	interval
 	machines []operated
-	t        float64
-	begun    bool
 }
 
 type operated struct {
@@ -28,8 +27,13 @@ type operated struct {
 	w, e, p, s, shaft int // signals
 	last              Operating
 	power             float64
-	states            map[[3]int]*Operating
+	states            map[stateKey]*Operating
+	key               stateKey   // of the state booked last
+	booked            *Operating // that state: most time steps are alike the one before, and a lookup costs more than all else here
 }
+
+// stateKey is alike for states alike: speed, setting and pressure in steps.
+type stateKey [3]int
 
 // Steps of states that count as alike.
 const (
@@ -57,14 +61,14 @@ func newOperation(c *circuit.Circuit, signals []circuit.Signal) *operation {
 			}
 			return -1
 		}
-		o.machines = append(o.machines, operated{block: b.ID, w: w, e: find("e"), p: find(p + ".p"), s: find(s + ".p"), shaft: find("shaft"), states: map[[3]int]*Operating{}})
+		o.machines = append(o.machines, operated{block: b.ID, w: w, e: find("e"), p: find(p + ".p"), s: find(s + ".p"), shaft: find("shaft"), states: map[stateKey]*Operating{}})
 	}
 	return o
 }
 
 // Sample books half an interval to the state before and half to this one.
 func (o *operation) Sample(s *circuit.Sample) error {
-	dt := s.T - o.t
+	half := o.to(s.T) / 2
 	for i := range o.machines {
 		m := &o.machines[i]
 		get := func(k int) float64 {
@@ -75,13 +79,12 @@ func (o *operation) Sample(s *circuit.Sample) error {
 		}
 		now := Operating{W: get(m.w), E: get(m.e), DP: get(m.p) - get(m.s)}
 		power := math.Abs(get(m.shaft))
-		if o.begun && dt > 0 {
-			m.book(m.last, m.power, dt/2)
-			m.book(now, power, dt/2)
+		if half > 0 {
+			m.book(m.last, m.power, half)
+			m.book(now, power, half)
 		}
 		m.last, m.power = now, power
 	}
-	o.t, o.begun = s.T, true
 	return nil
 }
 
@@ -89,7 +92,7 @@ func (o *operation) Sample(s *circuit.Sample) error {
 func (o *operation) Part(_, _ int, before *circuit.Sample) circuit.Receiver {
 	p := &operation{}
 	for _, m := range o.machines {
-		m.states = map[[3]int]*Operating{}
+		m.states, m.booked = map[stateKey]*Operating{}, nil
 		p.machines = append(p.machines, m)
 	}
 	if before != nil {
@@ -110,16 +113,19 @@ func (o *operation) Join(part circuit.Receiver) error {
 
 // book adds to the states alike; their mean is weighted by energy.
 func (m *operated) book(x Operating, power, dt float64) {
-	key := [3]int{int(math.Round(x.W / alikeSpeed)), int(math.Round(x.E / alikeSetting)), int(math.Round(x.DP / alikePressure))}
+	key := stateKey{int(math.Round(x.W / alikeSpeed)), int(math.Round(x.E / alikeSetting)), int(math.Round(x.DP / alikePressure))}
 	x.Seconds, x.Energy = dt, power*dt
 	m.add(key, x)
 }
 
-func (m *operated) add(key [3]int, x Operating) {
-	at := m.states[key]
-	if at == nil {
-		at = &Operating{W: x.W, E: x.E, DP: x.DP}
-		m.states[key] = at
+func (m *operated) add(key stateKey, x Operating) {
+	at := m.booked
+	if at == nil || key != m.key {
+		if at = m.states[key]; at == nil {
+			at = &Operating{W: x.W, E: x.E, DP: x.DP}
+			m.states[key] = at
+		}
+		m.key, m.booked = key, at
 	}
 	if sum := at.Energy + x.Energy; sum > 0 {
 		k := x.Energy / sum

@@ -97,8 +97,9 @@ func (s *Solution) decisionRows(p printer, c *Comparison) []DecisionRow {
 	add("energy drawn a year", figureNamed(yb, "drawn a year"), figureNamed(ya, "drawn a year"), p.kWh)
 	add("energy returned a year", figureNamed(yb, "returned a year"), figureNamed(ya, "returned a year"), nil)
 	add("mean power drawn", meanFigure(p, c.Base), meanFigure(p, c.Proposal), p.power)
-	demandBefore, demandAfter := demandFigure(p, c.Base), demandFigure(p, c.Proposal)
-	add("largest 15-minute mean of power drawn", demandBefore, demandAfter, p.power)
+	if before, after := demandFigure(p, c.Base), demandFigure(p, c.Proposal); known(before.Value) || known(after.Value) {
+		add("largest 15-minute mean of power drawn", before, after, p.power)
+	}
 	add("mean heat to the oil", figureNamed(hb, "mean heat to the oil, all running hours"), figureNamed(ha, "mean heat to the oil, all running hours"), p.power)
 	add("cooler for it", figureNamed(hb, "cooler for it, all running hours"), figureNamed(ha, "cooler for it, all running hours"), p.cooler)
 	add("cooler for the hottest duty", hottestCooler(p, c.Base, hb), hottestCooler(p, c.Proposal, ha), p.cooler)
@@ -117,11 +118,11 @@ func meanFigure(p printer, c *CircuitRun) Figure {
 		p.kWh(c.Year.Drawn.Total()) + " / " + p.hours(c.Year.Hours), "over the running hours of the year"}}
 }
 
-// demandFigure is the largest 15-minute mean among the duties that run in the year.
+// demandFigure is the largest 15-minute mean among the duties that run in the year and draw from the mains.
 func demandFigure(p printer, c *CircuitRun) Figure {
 	best := Figure{Name: "15-minute mean", Value: math.NaN(), Text: "n/a"}
 	for _, d := range c.Duties {
-		if d.Balance == nil || d.Duty.Hours <= 0 {
+		if d.Balance == nil || d.Duty.Hours <= 0 || d.Balance.offMains() {
 			continue
 		}
 		if m := d.Balance.Demand; !known(best.Value) || m.Mean > best.Value {
@@ -152,8 +153,8 @@ func (s *Solution) outcome(p printer, c *Comparison) []Figure {
 		add("saved share", c.SavedShare, p.share(c.SavedShare), Calculation{"ΔE / E_before", p.kWh(c.SavedDrawn) + " / " + p.kWh(before), "energy drawn"})
 	}
 	if known(c.MoneyDrawn) {
-		add("money saved on energy drawn a year", c.MoneyDrawn, p.money(c.MoneyDrawn), Calculation{"ΔK = ΔE · price",
-			s.savedNumbers(c, p.kWh(c.SavedDrawn)+" × "+p.price(s.Tariff.Price), p.money(c.Base.Money.Drawn)+" − "+p.money(c.Proposal.Money.Drawn)), "marginal price, from " + fromFile})
+		add("money saved on energy drawn a year", c.MoneyDrawn, p.money(c.MoneyDrawn), c.saving("K", "price",
+			p.kWh(c.SavedDrawn)+" × "+p.price(s.Tariff.Price), p.money(c.Base.Money.Drawn)+" − "+p.money(c.Proposal.Money.Drawn), "marginal price, from "+fromFile))
 		if s.Tariff.CreditReturned {
 			add("paid for returned energy a year, more than before", c.MoneyCredit, p.money(c.MoneyCredit), Calculation{"(R_after − R_before) · price",
 				fmt.Sprintf("(%s − %s) × %s", p.kWh(c.Proposal.Year.Returned.Total()), p.kWh(c.Base.Year.Returned.Total()), p.price(s.Tariff.Price)), "credited because the file says so"})
@@ -169,8 +170,8 @@ func (s *Solution) outcome(p printer, c *Comparison) []Figure {
 	}
 	add("simple payback", c.Payback.Likely, c.Payback.String(), calc)
 	if known(c.CO2Saved) {
-		add("CO2 saved a year", c.CO2Saved, p.mass(c.CO2Saved), Calculation{"Δm = ΔE · f", s.savedNumbers(c, p.kWh(c.SavedDrawn)+" × "+s.Tariff.co2Text(), p.mass(c.Base.Money.CO2)+" − "+p.mass(c.Proposal.Money.CO2)),
-			"factor from " + fromFile + "; held for every year, though factors of mains fall"})
+		add("CO2 saved a year", c.CO2Saved, p.mass(c.CO2Saved), c.saving("m", "f", p.kWh(c.SavedDrawn)+" × "+s.Tariff.co2Text(), p.mass(c.Base.Money.CO2)+" − "+p.mass(c.Proposal.Money.CO2),
+			"factor from "+fromFile+"; held for every year, though factors of mains fall"))
 	}
 	return out
 }

@@ -60,13 +60,17 @@ func peakFigures(p printer, d *DutyRun) []Figure {
 	if net := b.WorkPositive().Total() + b.WorkNegative().Total(); b.SupplyIn.Total() == 0 || math.Abs(net) <= 1e-3*b.WorkPositive().Total() {
 		work, workText, workCalc = math.NaN(), "n/a", "the cycle does no net work, or draws nothing"
 	}
+	mean := Figure{"15-minute mean of power drawn", b.Demand.Mean, p.power(b.Demand.Mean),
+		Calculation{"max over t of E(t, t + 15 min) / 15 min", "from " + p.seconds(b.Demand.From), string(b.Demand.Basis)}}
+	if b.offMains() {
+		mean.Value, mean.Text, mean.Calculation.Numbers = math.NaN(), "n/a", "nothing is drawn from the mains"
+	}
 	return []Figure{
 		{"work against loads, of energy drawn", work, workText, Calculation{"work⁺ / in", workCalc, fromBalance}},
 		{"highest pressure (≤: upper estimate)", d.Peak.Value, pressure, Calculation{"max p", d.Peak.At + " " + at(d.Peak.T), "steady balance at each time step; shocks are not in it, and in fast ramps the oil has no time to follow"}},
 		{"highest shaft power", b.PeakShaft, p.power(b.PeakShaft), Calculation{"max Σ T·ω over the prime movers", at(b.PeakShaftAt), fromBalance}},
 		{"highest power drawn", b.PeakSupply, p.power(b.PeakSupply), Calculation{"max Σ supply", at(b.PeakSupplyAt), fromBalance}},
-		{"15-minute mean of power drawn", b.Demand.Mean, p.power(b.Demand.Mean),
-			Calculation{"max over t of E(t, t + 15 min) / 15 min", "from " + p.seconds(b.Demand.From), string(b.Demand.Basis)}},
+		mean,
 	}
 }
 
@@ -75,7 +79,7 @@ func (c *CircuitRun) sum(p printer, of func(*Balance) float64) string {
 	var parts []string
 	for _, d := range c.Duties {
 		if d.Balance != nil && d.Duty.Hours > 0 && d.Balance.Cycle > 0 {
-			parts = append(parts, fmt.Sprintf("%s: %s × %s", d.Duty.Name, p.energy(of(d.Balance)), p.count(d.Duty.Hours/d.Balance.Cycle)))
+			parts = append(parts, fmt.Sprintf("%s: %s × %s", d.Duty.Name, p.energy(nothing(of(d.Balance), d.Balance.SupplyIn.Total())), p.count(d.Duty.Hours/d.Balance.Cycle)))
 		}
 	}
 	return strings.Join(parts, " + ")
@@ -152,7 +156,7 @@ func (s *Solution) heatFigures(p printer, c *CircuitRun) []Figure {
 	for _, h := range c.Heat.Duties {
 		for _, d := range c.Duties {
 			if d.Duty.Name == h.Duty && d.Balance != nil {
-				add(h.Duty, h, p.energy(d.Balance.HeatToOil().Total())+" / "+p.seconds(d.Balance.Cycle))
+				add(h.Duty, h, p.energy(nothing(d.Balance.HeatToOil().Total(), d.Balance.SupplyIn.Total()))+" / "+p.seconds(d.Balance.Cycle))
 			}
 		}
 	}

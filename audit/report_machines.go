@@ -35,7 +35,7 @@ func (s *Solution) machinePages(p printer, c *CircuitRun) []MachinePage {
 	var out []MachinePage
 	for i := range c.Circuit.Blocks {
 		b := &c.Circuit.Blocks[i]
-		if _, ok := throughputKinds[b.Kind]; ok {
+		if b.Passes() != circuit.NoPassage {
 			out = append(out, c.machinePage(p, b))
 		}
 	}

@@ -42,16 +42,16 @@ func serviceTable(p printer, c *CircuitRun) Table {
 	})
 	row("years to its endurance", func(s *Service) string { return numberOr(s.Life, 3) })
 	row("mean loss, likely", func(s *Service) string { return orDash(s.MeanLost[1], units.Power, p) })
-	row("low to high", func(s *Service) string {
+	row("mean loss, low to high", func(s *Service) string {
 		return orDash(s.MeanLost[0], units.Power, p) + " to " + orDash(s.MeanLost[2], units.Power, p)
 	})
-	row("beside it, a swashplate machine of", func(s *Service) string {
+	row("the swashplate machine beside it has", func(s *Service) string {
 		if s.Fitted {
-			return "measured points"
+			return "losses of measured points"
 		}
 		return "usual losses"
 	})
-	row("mean loss of that", func(s *Service) string { return orDash(s.Beside.LostOther/s.Beside.Seconds, units.Power, p) })
+	row("mean loss of that machine", func(s *Service) string { return orDash(s.Beside.LostOther/s.Beside.Seconds, units.Power, p) })
 	row("advantage gone at an idle loss of", func(s *Service) string { return s.goneText(p.system) })
 	t.Note = serviceNote(c.Services)
 	return t
@@ -93,12 +93,8 @@ func (s *Service) Verdict(system units.System) string {
 	if s.Beside.Seconds <= 0 {
 		return "It does not turn in this duty."
 	}
-	way := "less"
-	gain := s.Gain[1]
-	if gain < 0 {
-		way, gain = "more", -gain
-	}
-	text := fmt.Sprintf("Over the duty it loses %s %s than %s (low %s, high %s of its own losses).", p.power(gain), way, s.Other, signed(p, s.Gain[0]), signed(p, s.Gain[2]))
+	text := fmt.Sprintf("Over the duty it loses %s than %s; %s with the low end of its own losses, %s with the high end.",
+		lessText(p, s.Gain[1]), s.Other, lessText(p, s.Gain[0]), lessText(p, s.Gain[2]))
 	switch gone := s.Beside.Gone(); {
 	case !known(gone):
 		return text
@@ -110,12 +106,12 @@ func (s *Service) Verdict(system units.System) string {
 	}
 }
 
-// signed writes an advantage with its sign: less is good.
-func signed(p printer, gain float64) string {
+// lessText writes an advantage in words.
+func lessText(p printer, gain float64) string {
 	if gain < 0 {
-		return "+" + p.power(-gain)
+		return p.power(-gain) + " more"
 	}
-	return "−" + p.power(gain)
+	return p.power(gain) + " less"
 }
 
 func orDash(v float64, d units.Dim, p printer) string {

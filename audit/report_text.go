@@ -2,6 +2,7 @@ package audit
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"barlitre/circuit"
@@ -103,8 +104,10 @@ func (s *Solution) moneyAssumptions(p printer) []string {
 			text += " Note in the file: " + n + "."
 		}
 		out = append(out, text)
-	} else {
+	} else if !s.File.Burns() {
 		out = append(out, "No price of energy is given, so no money is shown.")
+	} else if slices.ContainsFunc(s.Circuits, func(c *CircuitRun) bool { return !burns(c.Circuit) }) {
+		out = append(out, "No price of energy from the mains is given, so no money is shown for what is drawn from them.")
 	}
 	if t.CreditReturned {
 		out = append(out, "Energy returned to the mains is credited at the same price, because the file says so.")

@@ -54,10 +54,9 @@ func otherMachine(b *circuit.Block, d float64) (law machines.Displacement, name 
 
 // services is the receiver that compares services with another machine.
 type services struct {
-	runs  []ServiceRun
-	at    []serviceSignals
-	t     float64
-	begun bool
+	interval
+	runs []ServiceRun
+	at   []serviceSignals
 }
 
 type serviceSignals struct {
@@ -71,10 +70,7 @@ func newServices(c *circuit.Compiled, cond circuit.Conditions) *services {
 		by[s.Name] = i
 	}
 	x := &services{}
-	fluid := machines.Fluid{Mu: cond.Viscosity, Rho: cond.Density, Bulk: cond.BulkModulus, Air: cond.Air}
-	if fluid.Bulk == 0 {
-		fluid.Bulk = machines.DefaultBulkModulus
-	}
+	fluid := fluidOf(cond)
 	for i := range c.Circuit().Blocks {
 		b := &c.Circuit().Blocks[i]
 		law, ok := circuit.SwitchedLaw(b)
@@ -90,11 +86,7 @@ func newServices(c *circuit.Compiled, cond circuit.Conditions) *services {
 
 // Sample takes one time step: half of the time since the step before counts for either.
 func (x *services) Sample(s *circuit.Sample) error {
-	dt := s.T - x.t
-	if !x.begun {
-		dt = 0
-	}
-	x.t, x.begun = s.T, true
+	dt := x.to(s.T)
 	for i := range x.at {
 		a := &x.at[i]
 		now := [3]float64{-s.Signals[a.q], s.Signals[a.w], s.Signals[a.pP] - s.Signals[a.pS]}

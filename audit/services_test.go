@@ -6,10 +6,12 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 	"testing"
 
 	"barlitre/circuit"
+	"barlitre/circuit/duty"
 	"barlitre/machines"
 	"barlitre/machines/units"
 	"barlitre/samples"
@@ -202,5 +204,29 @@ func TestPointsOfAnotherMachine(t *testing.T) {
 	wants(t, "Cv", b.Fit.Law.Cv, law.Cv, 1e-3)
 	if own, ok := circuit.SwitchedLaw(b); !ok || own.Cs != 5e-9 {
 		t.Errorf("the points of another machine changed the law of the block: %+v", own)
+	}
+}
+
+// Of three axes only the lift stands under its load; the packer and the fan never do.
+func TestSuspendedLoadIsTheAxisThatStandsUnderIt(t *testing.T) {
+	for _, c := range station(t, nil).Circuits {
+		for _, x := range c.cautions() {
+			if x.Topic == "Suspended load" && c.Circuit.Block(x.Block).Word("axis") != "lift" {
+				t.Errorf("%s: %s: %s", c.Circuit.Name, x.Block, x.Text)
+			}
+		}
+		if !c.mayFall("lift") || c.mayFall("fan") {
+			t.Errorf("%s: lift and fan are taken for one another", c.Circuit.Name)
+		}
+	}
+	s := station(t, func(f *File) { // whose load is not given may stand on any axis
+		for _, d := range f.Duties {
+			d.Tracks = slices.DeleteFunc(d.Tracks, func(tr duty.Track) bool { return tr.Of == "fan" && tr.What == duty.Load })
+		}
+	})
+	for _, d := range s.Circuits[0].Duties {
+		if d.Balance != nil && d.Balance.Seconds.Holding > 0 && !s.Circuits[0].mayFall("fan") {
+			t.Error("an axis without a load in the duty counts as safe")
+		}
 	}
 }

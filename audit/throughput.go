@@ -17,20 +17,24 @@ type Throughput struct {
 // PartLoad is the share of the rated power below which a drive counts as being at part load (our choice).
 const PartLoad = 0.3
 
-// throughputKinds have one side that a signal tells the power of; sign is 1 where power that enters there is positive.
-var throughputKinds = map[string]struct {
-	signal string
-	sign   float64
-}{
-	"pump": {"shaft", 1}, "charge_pump": {"shaft", 1}, "motor": {"shaft", 1}, "switched_machine": {"shaft", 1},
-	"electric_motor": {"shaft", -1}, "engine": {"shaft", -1}, "converter": {"electric", 1},
+// countedSide names the signal that tells the power at one side of a machine or drive; sign is 1 where power that enters
+// there is positive. It is not ok for a block whose throughput does not count.
+func countedSide(b *circuit.Block) (signal string, sign float64, ok bool) {
+	switch b.Passes() {
+	case circuit.PumpShaft, circuit.HydraulicMotor:
+		return "shaft", 1, true
+	case circuit.PrimeMover:
+		return "shaft", -1, true
+	case circuit.Inverter:
+		return "electric", 1, true
+	}
+	return "", 0, false
 }
 
 // passage is the circuit.Receiver that sums up throughputs.
 type passage struct {
+	*integrals
 	through []passing
-	t       float64
-	begun   bool
 }
 
 type passing struct {
@@ -38,24 +42,25 @@ type passing struct {
 	signal      int
 	sign, rated float64
 	losses      []int // channels
-	last        [4]float64
-	sum         [4]float64 // integrals of the powers in and out, and of the time that it runs, and at part load
 }
+
+// passingFigures are integrated for each: the powers in and out, that it runs, and that it runs at part load.
+const passingFigures = 4
 
 func newPassage(c *circuit.Circuit, signals []circuit.Signal, channels []circuit.Channel) *passage {
 	out := &passage{}
 	for i := range c.Blocks {
 		b := &c.Blocks[i]
-		kind, ok := throughputKinds[b.Kind]
+		counted, sign, ok := countedSide(b)
 		if !ok {
 			continue
 		}
-		p := passing{block: b.ID, signal: -1, sign: kind.sign, rated: math.NaN()}
+		p := passing{block: b.ID, signal: -1, sign: sign, rated: math.NaN()}
 		if v, given := b.Values["rated_power"]; given {
 			p.rated = v.SI
 		}
 		for k, s := range signals {
-			if s.Block == b.ID && s.What == kind.signal && s.Port == "" {
+			if s.Block == b.ID && s.What == counted && s.Port == "" {
 				p.signal = k
 			}
 		}
@@ -68,28 +73,17 @@ func newPassage(c *circuit.Circuit, signals []circuit.Signal, channels []circuit
 			out.through = append(out.through, p)
 		}
 	}
+	out.integrals = newIntegrals(passingFigures*len(out.through), func(s *circuit.Sample, to []float64) {
+		for i := range out.through {
+			now := out.through[i].at(s)
+			copy(to[passingFigures*i:], now[:])
+		}
+	})
 	return out
 }
 
-// Sample books by the trapezoid rule.
-func (o *passage) Sample(s *circuit.Sample) error {
-	dt := s.T - o.t
-	for i := range o.through {
-		p := &o.through[i]
-		now := p.at(s)
-		if o.begun && dt > 0 {
-			for k := range p.sum {
-				p.sum[k] += dt * (p.last[k] + now[k]) / 2
-			}
-		}
-		p.last = now
-	}
-	o.t, o.begun = s.T, true
-	return nil
-}
-
 // at returns the powers that enter and leave, and 1 while it runs, and 1 while it does so at part load.
-func (p *passing) at(s *circuit.Sample) (now [4]float64) {
+func (p *passing) at(s *circuit.Sample) (now [passingFigures]float64) {
 	loss, one := 0.0, p.sign*s.Signals[p.signal]
 	for _, k := range p.losses {
 		loss += s.Power[k]
@@ -109,34 +103,12 @@ func (p *passing) at(s *circuit.Sample) (now [4]float64) {
 	return now
 }
 
-// Part sums up the time steps after before, and the time from it to the first of them.
-func (o *passage) Part(_, _ int, before *circuit.Sample) circuit.Receiver {
-	p := &passage{}
-	for _, q := range o.through {
-		q.sum = [4]float64{}
-		p.through = append(p.through, q)
-	}
-	if before != nil {
-		_ = p.Sample(before) // never fails, and books nothing yet
-	}
-	return p
-}
-
-// Join adds what passed in a part.
-func (o *passage) Join(part circuit.Receiver) error {
-	for i, q := range part.(*passage).through {
-		for k, v := range q.sum {
-			o.through[i].sum[k] += v
-		}
-	}
-	return nil
-}
-
 // all lists the throughputs by block.
 func (o *passage) all() map[string]Throughput {
 	out := map[string]Throughput{}
-	for _, p := range o.through {
-		x := Throughput{In: p.sum[0], Out: p.sum[1], Running: p.sum[2], Part: p.sum[3]}
+	for i, p := range o.through {
+		sum := o.sum[passingFigures*i:]
+		x := Throughput{In: sum[0], Out: sum[1], Running: sum[2], Part: sum[3]}
 		if math.IsNaN(p.rated) {
 			x.Part = math.NaN()
 		}

@@ -7,7 +7,7 @@ import (
 // chargePumpKind is the charge pump of a closed circuit with its own relief valve.
 var chargePumpKind = &Kind{
 	Name: kindChargePump, Title: "Charge pump with relief", Group: "pumps and motors",
-	Letter: "CP", Typical: []Setting{{"displacement", "16 cm3/rev"}, {"charge", "20 bar"}},
+	Passes: PumpShaft, Letter: "CP", Typical: []Setting{{"displacement", "16 cm3/rev"}, {"charge", "20 bar"}},
 	Text: "Fixed pump with its own relief valve at the charge pressure, feeding the low side of a closed circuit through check valves.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},

@@ -15,7 +15,7 @@ const (
 // converterKind is a frequency converter between the mains and a motor.
 var converterKind = &Kind{
 	Name: kindConverter, Title: "Frequency converter", Group: "supply",
-	Letter: "U", Typical: []Setting{{"rated_power", "15 kW"}},
+	Passes: Inverter, Letter: "U", Typical: []Setting{{"rated_power", "15 kW"}},
 	Text: "Feeds motors of variable speed. What a driving load sends back goes first to the other motors on its line (one link of direct current), and what they do not take to its brake resistor, or to the mains if the converter can return it.",
 	Ports: []Port{
 		{Name: "M", Type: Electric, Text: "to the motors; its other side is the mains"},

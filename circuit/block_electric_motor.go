@@ -9,7 +9,7 @@ import (
 // speed, and the machines on the shaft ask it for torque.
 var electricMotorKind = &Kind{
 	Name: kindElectricMotor, Title: "Electric motor", Group: "supply",
-	Letter: "M", Typical: []Setting{{"rated_power", "15 kW"}, {"efficiency", "0.921"}},
+	Passes: PrimeMover, Letter: "M", Typical: []Setting{{"rated_power", "15 kW"}, {"efficiency", "0.921"}},
 	Text: "Induction motor or permanent-magnet servo motor, in four quadrants: driven by its shaft it is a generator. It turns at constant speed; with `slip`, straight on the mains, slower as it gives more torque; or, behind a frequency converter, at the speed that makes an axis move as the duty says (`follows`) or that a track commands. With `commands: torque` its track commands a torque and its speed is found, as of a generator. With a `torque_limit` it slows down when the machines on its shaft ask for more. Without a converter what comes back goes to the mains. Its efficiency is typed, or that of its `efficiency_class` and `poles`.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},

@@ -11,7 +11,7 @@ import (
 // torque reaches.
 var engineKind = &Kind{
 	Name: kindEngine, Title: "Combustion engine", Group: "supply",
-	Letter: "DE", Typical: []Setting{{"rated_power", "55 kW"}, {"speed", "2200 rpm"}},
+	Passes: PrimeMover, Letter: "DE", Typical: []Setting{{"rated_power", "55 kW"}, {"speed", "2200 rpm"}},
 	Text: "Diesel engine. Its governor holds the set speed; asked for more than its torque limit it slows down until both are equal, and driven by a load it brakes with its drag and then overspeeds. What it draws is the energy of its fuel, priced as the fuel_price of the audit file says. With `idle_speed` it idles while every axis stands.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},

@@ -11,7 +11,7 @@ import (
 // hydraulicMotorKind is a fixed hydraulic motor, alone on an axis or on a shaft with others.
 var hydraulicMotorKind = &Kind{
 	Name: kindHydraulicMotor, Title: "Hydraulic motor", Group: "pumps and motors",
-	Letter: "HM", Typical: []Setting{{"displacement", "80 cm3/rev"}},
+	Passes: HydraulicMotor, Letter: "HM", Typical: []Setting{{"displacement", "80 cm3/rev"}},
 	Text: "Fixed motor. Oil into A turns it forwards. With `axis` it drives that axis, through a gear where one is given; without, its shaft must be joined to other machines.",
 	Ports: []Port{
 		{Name: "A", Type: Oil, Text: "oil in turns forwards"},

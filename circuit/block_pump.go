@@ -8,7 +8,7 @@ import (
 // pumpKind is a displacement pump, fixed or variable, in four quadrants.
 var pumpKind = &Kind{
 	Name: kindPump, Title: "Pump", Group: "pumps and motors",
-	Letter: "P", Typical: []Setting{{"displacement", "45 cm3/rev"}},
+	Passes: PumpShaft, Letter: "P", Typical: []Setting{{"displacement", "45 cm3/rev"}},
 	Text: "Displacement pump or pump-motor. `control` says what sets its displacement: fixed; pressure (holds the set pressure at P); load_sensing (holds the load pressure plus the margin at P); negative_flow (strokes back as the pilot pressure at LS rises: lead there the line before an orifice in the return of an open centre); pq (delivers the set flow until the set pressure is reached, then holds that; both may be tracks of the duty); power (full displacement, as far as its power limit lets it); commanded (a track of the duty, or `setting`). With a `power_limit` a torque limiter cuts back whatever its control wants. With `follows` its displacement is whatever makes the axis move as the duty says.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft"},

@@ -10,7 +10,7 @@ const (
 // switchedKind is one service of a cylinder-switched machine, in four quadrants.
 var switchedKind = &Kind{
 	Name: kindSwitched, Title: "Cylinder-switched machine", Group: "pumps and motors",
-	Letter: "S", Typical: []Setting{{"displacement", "45 cm3/rev"}},
+	Passes: PumpShaft, Letter: "S", Typical: []Setting{{"displacement", "45 cm3/rev"}},
 	Text: "One service of a radial piston machine whose cylinders a controller switches stroke by stroke: a fraction of them works, the rest idles at low pressure. It pumps or motors at will (fraction 1 to −1), and has an outlet of its own. Several services on one shaft, each with its own cylinders and its own circuit, pass power to one another through the shaft. The fraction is a mean over strokes. `control` says what sets it: commanded (a track of the duty, or `setting`), pressure, load_sensing; with `follows` it is what makes the axis move as the duty says.",
 	Ports: []Port{
 		{Name: "shaft", Type: Shaft, Text: "drive shaft, with the other services"},

@@ -127,6 +127,19 @@ type Equation struct{ Text, Source string }
 // Setting is a value as a file writes it.
 type Setting struct{ Key, Text string }
 
+// Passage says what a kind of machine or drive turns power from and into.
+type Passage int
+
+// The passages. The signal "shaft" of a prime mover is the power that it gives to its shaft, that of a pump or
+// hydraulic motor what it takes from its own; the signal "electric" of a converter is what it takes from the mains.
+const (
+	NoPassage      Passage = iota
+	PrimeMover             // to a shaft
+	PumpShaft              // from a shaft to oil, and back
+	HydraulicMotor         // from oil to an axis
+	Inverter               // from the mains to motors
+)
+
 // Kind is an entry of the catalog: everything the program knows of one kind of block.
 type Kind struct {
 	Name      string // as in files
@@ -138,6 +151,8 @@ type Kind struct {
 	Losses    []LossKind
 	Equations []Equation
 	Rating    string // key of the parameter that limits its pressure, if any
+	// Passes says which side of a machine or drive its power is counted at.
+	Passes Passage
 	// Letter begins the ids of such blocks, as in P1.
 	Letter string
 	// Typical is what a new block begins with where its kind has no default, to be replaced: common practice, no source.
@@ -252,6 +267,14 @@ func KindNamed(name string) *Kind {
 		}
 	}
 	return nil
+}
+
+// Passes is that of the kind of a block, none where there is no such kind.
+func (b *Block) Passes() Passage {
+	if k := KindNamed(b.Kind); k != nil {
+		return k.Passes
+	}
+	return NoPassage
 }
 
 // Every kind's defaults are written as a user would write them, and read once here.

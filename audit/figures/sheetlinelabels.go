@@ -48,12 +48,12 @@ func (s *Sheet) lineLabels(k *labeller) {
 func (s *Sheet) weight(n int) float64 {
 	w := 0.0
 	for _, e := range s.nets[n].ends {
-		switch s.parts[e.part].block.Kind {
-		case "pump", "switched_machine", "cylinder", "motor", "charge_pump":
+		switch p := s.parts[e.part]; {
+		case p.isMachine():
 			w += 2
-		case "valve":
+		case p.block.Kind == "valve":
 			w++
-		case "tank":
+		case p.block.Kind == "tank":
 			w -= 4
 		}
 	}
@@ -112,8 +112,7 @@ func (s *Sheet) endWeight(st *stretch) float64 {
 		if at != st.pts[0] && at != st.pts[len(st.pts)-1] {
 			continue
 		}
-		switch s.parts[e.part].block.Kind {
-		case "pump", "switched_machine", "cylinder", "motor", "charge_pump":
+		if s.parts[e.part].isMachine() {
 			return 3
 		}
 	}

@@ -127,6 +127,12 @@ func (p *part) isCylinder() bool {
 	return false
 }
 
+// isMachine tells whether the block is an actuator or a pump.
+func (p *part) isMachine() bool {
+	passes := p.block.Passes()
+	return p.isCylinder() || passes == circuit.PumpShaft || passes == circuit.HydraulicMotor
+}
+
 // varies tells whether a pump or electric motor is set by a control, so that its
 // setting or speed is worth showing.
 func (p *part) varies() bool {

@@ -113,7 +113,7 @@ func (l *layout) decision(d *audit.Decision, c *audit.Comparison) {
 	}
 	l.beforeAfter(d)
 	l.bars(d)
-	l.paybackTable(c)
+	l.paybackTable(c, "")
 	l.against(d)
 	st := style{size: 2.6, c: l.pal.Ink}
 	if len(l.r.Assumptions) > 0 {
@@ -229,7 +229,7 @@ func (l *layout) moneyText(v float64) string {
 }
 
 // paybackTable sets cost and payback side by side, low, likely and high.
-func (l *layout) paybackTable(c *audit.Comparison) {
+func (l *layout) paybackTable(c *audit.Comparison, title string) {
 	cost, n := c.Proposal.Cost, c.Payback
 	if !cost.Given || n.None != "" {
 		return
@@ -240,7 +240,7 @@ func (l *layout) paybackTable(c *audit.Comparison) {
 		}
 		return units.Number(v, 2) + " years"
 	}
-	t := table{cols: []column{{"", false}, {"low", true}, {"likely", true}, {"high", true}}, rows: []row{
+	t := table{title: title, cols: []column{{"", false}, {"low", true}, {"likely", true}, {"high", true}}, rows: []row{
 		{cells: []string{"cost of the retrofit", l.moneyText(cost.Low), l.moneyText(cost.Likely), l.moneyText(cost.High)}},
 		{cells: []string{"simple payback", years(n.Low), years(n.Likely), years(n.High)}, sum: true},
 	}}

@@ -55,5 +55,5 @@ func (l *layout) outcome(d *audit.Decision, c *audit.Comparison) {
 		t.note = d.Verdict
 	}
 	l.table(t)
-	l.paybackTable(c)
+	l.paybackTable(c, "Cost and payback")
 }

@@ -219,7 +219,8 @@ func (l *layout) follow(s Section) float64 {
 	case s == Duty && len(l.s.File.Duties) > 0:
 		d := l.s.File.Duties[0]
 		_, name := l.headLines(2, dutyHead+d.Name)
-		return 20 + name + l.plotHeight(l.asked(0), d)
+		lanes, _ := l.asked(0)
+		return 20 + name + l.plotHeight(lanes, d)
 	}
 	return keepable + 12 // a short table with its title
 }

@@ -21,9 +21,13 @@ func (l *layout) duties() {
 		l.para("The file holds no duty.", l.body())
 	}
 	for i, d := range l.s.File.Duties {
-		asked := l.asked(i)
+		asked, zero := l.asked(i)
 		l.heading(2, dutyHead+d.Name, 10+l.plotHeight(asked, d))
-		l.para(l.dutyText(i), l.body())
+		text := l.dutyText(i)
+		if len(zero) > 0 {
+			text += " At zero throughout: " + strings.Join(zero, ", ") + "."
+		}
+		l.para(text, l.body())
 		l.plot(asked, d)
 		runs := l.courses(i)
 		if len(runs) > 0 {
@@ -66,6 +70,9 @@ func (l *layout) first(lanes []figures.Lane, d *duty.Duty) figures.Plot {
 
 // plotHeight returns the least height of the first plot of lanes on paper.
 func (l *layout) plotHeight(lanes []figures.Lane, d *duty.Duty) float64 {
+	if len(lanes) == 0 {
+		return 0
+	}
 	return 2*l.sheet.room + figureLeast*l.first(lanes, d).Height(fullW/figureLeast)
 }
 
@@ -79,10 +86,9 @@ func (l *layout) plot(lanes []figures.Lane, d *duty.Duty) {
 }
 
 // asked returns the lanes of a duty: what it gives, axis by axis, and how a
-// circuit moved where it fell short.
-func (l *layout) asked(i int) []figures.Lane {
+// circuit moved where it fell short; and the names of those that would show nothing but a line at zero.
+func (l *layout) asked(i int) (lanes []figures.Lane, zero []string) {
 	d := l.s.File.Duties[i]
-	var lanes []figures.Lane
 	add := func(t duty.Track, kind duty.AxisKind) {
 		u := units.Percent
 		if t.What != duty.Command {
@@ -98,6 +104,10 @@ func (l *layout) asked(i int) []figures.Lane {
 			lane.Series[0].Name = "measured"
 			lane.Series = append(lane.Series, l.computed(i, audit.MeasuredSignal(t), u)...)
 		}
+		if len(lane.Series) == 1 && reach(lane) == [2]float64{} {
+			zero = append(zero, lane.Title)
+			return
+		}
 		lanes = append(lanes, lane)
 	}
 	for _, a := range l.s.File.Axes {
@@ -112,7 +122,7 @@ func (l *layout) asked(i int) []figures.Lane {
 			add(t, duty.Linear)
 		}
 	}
-	return lanes
+	return lanes, zero
 }
 
 // computed returns a signal in each circuit that has it.

@@ -42,11 +42,15 @@ const (
 	keepable = 48.0 // a table not higher is not broken
 )
 
-// numeric reports whether a cell holds a number, with or without a unit.
+// numeric reports whether a cell holds a number, with or without a unit, or says that there is none; a sentence that
+// begins with a number is text.
 func numeric(cell string) bool {
 	r, _ := utf8.DecodeRuneInString(cell)
-	return r >= '0' && r <= '9' || r == '−' || cell == "n/a" || cell == "–"
+	return (r >= '0' && r <= '9' || r == '−') && len(strings.Fields(cell)) <= numberWords || cell == "n/a" || cell == "–" || cell == "not given"
 }
+
+// numberWords is how many words a number with its unit, or a range of two, has at most; thin spaces part words.
+const numberWords = 8
 
 // fromReport turns a table of the report into one to be printed.
 func fromReport(t audit.Table) table {
