@@ -198,7 +198,7 @@ func TestStationsAreToldWhenShown(t *testing.T) {
 	if got := b.pages[1].told; len(got) != 1 || !got[0].Has(station.Solution|station.Model) {
 		t.Errorf("the station was told %v", got)
 	}
-	if !b.pages[1].box.Visible() || b.pages[0].box.Visible() {
+	if o := b.body.Objects; len(o) != 1 || o[0] != b.pages[1].box || !b.pages[1].box.Visible() {
 		t.Error("the wrong station is shown")
 	}
 	if text := b.rail.items[1].DumpText(); text != "Duty (to mend) (shown)" {

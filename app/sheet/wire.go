@@ -107,7 +107,7 @@ func (e *editor) portAt(at fyne.Position) *figures.SheetPort {
 		return nil
 	}
 	x, y := e.at(at)
-	least := math.Max(0.7, math.Min(1.2, portRing/e.zoom)) // [M]
+	least := math.Max(0.7, math.Min(1.2, portRing*float64(widgets.Scale())/e.zoom)) // [M]
 	var found *figures.SheetPort
 	for i := range e.ports {
 		p := &e.ports[i]
