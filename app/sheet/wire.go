@@ -38,10 +38,10 @@ func (w *wire) build(e *editor) {
 }
 
 func (w *wire) recolour() {
-	pal := w.e.s.ctx.Palette()
-	w.line.StrokeColor, w.line.StrokeWidth = pal.Gain, 2
+	pal, stroke := w.e.s.ctx.Palette(), 2*widgets.Scale()
+	w.line.StrokeColor, w.line.StrokeWidth = pal.Gain, stroke
 	for _, r := range w.rings {
-		r.StrokeColor, r.StrokeWidth = pal.Gain, 2
+		r.StrokeColor, r.StrokeWidth = pal.Gain, stroke
 	}
 	for _, d := range w.dots {
 		d.FillColor = pal.Gain

@@ -83,6 +83,7 @@ func TestDragConnectsAtAnyScale(t *testing.T) {
 		b.theme(scale > 1, scale)
 		b.s.fitAll()
 		e := b.s.editors[0]
+		e.zoomAt(0, 0, 7/e.zoom) // small, so that the ring is large to the drawing
 		near := float32(portRing-2) * scale
 		from, to := b.port(0, "P1.P").AddXY(-near, 0), b.port(0, "RV1.P").AddXY(0, -near)
 		e.MouseDown(event(from, desktop.MouseButtonPrimary, 0))
