@@ -91,11 +91,8 @@ func (f *Frame) build() {
 	f.status = widgets.Name(widget.NewLabel(""), "frame.status")
 	f.status.Truncation = fyne.TextTruncateEllipsis
 	f.body = container.NewStack()
-	for i, s := range f.stations {
+	for i := range f.stations {
 		f.stale[i] = station.Everything
-		content := s.Content()
-		content.Hide()
-		f.body.Add(content)
 	}
 	f.win.SetContent(widgets.NewTips(container.New(&page{f}, f.verdict, widget.NewSeparator(), f.rail.content,
 		container.NewScroll(f.body), widget.NewSeparator(), f.strip.content, f.status)))
@@ -104,15 +101,12 @@ func (f *Frame) build() {
 	f.show(0)
 }
 
-// show brings a station to the front.
+// show brings a station into the window; the others are not in it, so that the toolkit
+// spends no time on them.
 func (f *Frame) show(i int) {
-	for j, o := range f.body.Objects {
-		if j != i {
-			o.Hide()
-		}
-	}
 	f.current = i
-	f.body.Objects[i].Show()
+	f.body.RemoveAll()
+	f.body.Add(f.stations[i].Content())
 	if w := f.stale[i]; w != 0 {
 		f.stale[i] = 0
 		f.stations[i].Changed(w)

@@ -138,20 +138,27 @@ func TestVerdictFollowsAnEdit(t *testing.T) {
 	}
 }
 
-func TestFieldsDropFromTheRight(t *testing.T) {
+// A narrow window drops the cooler and the heat before the payback, and nothing runs into the state.
+func TestFieldsDropByWeight(t *testing.T) {
 	b := newBench(t)
 	b.Open("")
 	b.solved()
-	b.win.Resize(fyne.NewSize(1280, 800))
-	wide := len(b.verdictPartsNow())
-	b.win.Resize(fyne.NewSize(700, 600))
-	narrow := b.verdictPartsNow()
-	if len(narrow) >= wide || len(narrow) == 0 {
-		t.Errorf("%d fields wide, %d narrow", wide, len(narrow))
-	}
-	for _, p := range narrow {
-		if p.X+p.W > float64(b.verdict.Size().Width) {
-			t.Errorf("field %s reaches %g of %g", p.Name, p.X+p.W, b.verdict.Size().Width)
+	for _, c := range []struct {
+		width float32
+		want  string
+	}{{1200, "energy saving heat cooler payback"}, {820, "energy saving heat payback"}, {640, "energy saving payback"}} {
+		b.win.Resize(fyne.NewSize(c.width, 560))
+		var names []string
+		state, end := 0.0, 0.0
+		for _, p := range b.verdictPartsNow() {
+			if p.Name == "state" {
+				state = p.X
+				continue
+			}
+			names, end = append(names, p.Name), p.X+p.W
+		}
+		if got := strings.Join(names, " "); got != c.want || end > state {
+			t.Errorf("%g wide: %s, to %g of %g", c.width, got, end, state)
 		}
 	}
 }
@@ -198,7 +205,7 @@ func TestStationsAreToldWhenShown(t *testing.T) {
 	if got := b.pages[1].told; len(got) != 1 || !got[0].Has(station.Solution|station.Model) {
 		t.Errorf("the station was told %v", got)
 	}
-	if !b.pages[1].box.Visible() || b.pages[0].box.Visible() {
+	if o := b.body.Objects; len(o) != 1 || o[0] != b.pages[1].box || !b.pages[1].box.Visible() {
 		t.Error("the wrong station is shown")
 	}
 	if text := b.rail.items[1].DumpText(); text != "Duty (to mend) (shown)" {

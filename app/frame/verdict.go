@@ -29,13 +29,6 @@ func (f *Frame) newVerdict() *widgets.Figure {
 	return v
 }
 
-// verdictField is one field: a figure before and after, or alone.
-type verdictField struct {
-	name, title           string
-	before, after, beside string
-	figure                audit.Figure
-}
-
 // verdictFields takes the fields from the report's decision on the first proposal.
 func (f *Frame) verdictFields() []verdictField {
 	r := f.Report()
@@ -161,47 +154,13 @@ func (f *Frame) drawVerdict(p pen.Pen, w, h float64) []widgets.Part {
 	p.Circle(pen.Pt{X: w - sw - 26, Y: h/2 - 1}, 4, dot, pen.Stroke{})
 	p.Text(pen.Pt{X: w - 16, Y: h/2 + 3}, state, 11, pal.Secondary, pen.Right, false)
 	parts = append(parts, widgets.Part{Name: "state", Text: state, X: w - sw - 32, Y: 0, W: sw + 32, H: h})
-	x, room := 92.0, w-sw-52
-	for _, v := range f.verdictFields() {
-		before, after, beside := f.Local(v.before), f.Local(v.after), f.Local(v.beside)
-		if before != "" {
-			before = withoutUnit(before, after)
-		}
-		wb, wa, ws := p.TextWidth(before, 16, false), p.TextWidth(after, 16, true), p.TextWidth(beside, 11, false)
-		width := wa
-		if before != "" {
-			width += wb + 26
-		}
-		if beside != "" {
-			width += ws + 8
-		}
-		width = max(width, p.TextWidth(v.title, 11, false))
-		if x+width > room {
-			break // fields drop from the right
-		}
-		p.Text(pen.Pt{X: x, Y: 19}, v.title, 11, pal.Secondary, pen.Left, false)
-		at := x
-		if before != "" {
-			p.Text(pen.Pt{X: at, Y: 41}, before, 16, pal.Secondary, pen.Left, false)
-			p.Text(pen.Pt{X: at + wb + 7, Y: 41}, "→", 12, pal.Secondary, pen.Left, false)
-			at += wb + 26
-		}
-		p.Text(pen.Pt{X: at, Y: 41}, after, 16, pal.Gain, pen.Left, true)
-		if beside != "" {
-			p.Text(pen.Pt{X: at + wa + 8, Y: 41}, beside, 11, pal.Secondary, pen.Left, false)
-		}
-		text := strings.TrimSpace(strings.TrimPrefix(before+" → "+after+" "+beside, " → "))
+	const from, gap = 92.0, 28.0
+	x := from
+	for _, v := range f.fittingFields(p, w-sw-52-from, gap) {
+		width := v.draw(p, x, pal)
+		text := strings.TrimSpace(strings.TrimPrefix(v.before+" → "+v.after+" "+v.beside, " → "))
 		parts = append(parts, widgets.Part{Name: v.name, Text: text, X: x, Y: 0, W: width, H: h, Click: true})
-		x += width + 28
+		x += width + gap
 	}
 	return parts
-}
-
-// withoutUnit drops the unit of a number that stands before another in the same unit.
-func withoutUnit(before, after string) string {
-	i, j := strings.LastIndexAny(before, "\u202f\u00a0 "), strings.LastIndexAny(after, "\u202f\u00a0 ")
-	if i > 0 && j > 0 && strings.TrimLeft(before[i:], "\u202f\u00a0 ") == strings.TrimLeft(after[j:], "\u202f\u00a0 ") {
-		return strings.TrimRight(before[:i], "\u202f\u00a0 ")
-	}
-	return before
 }

@@ -3,6 +3,7 @@
 package payback
 
 import (
+	"math"
 	"strings"
 
 	"fyne.io/fyne/v2"
@@ -162,7 +163,7 @@ func (p *Payback) Mend() bool {
 		return false
 	}
 	for _, c := range s.Comparisons {
-		if c.Missing == "" && (!s.File.HasPrice || !c.Proposal.Cost.Given) {
+		if c.Missing == "" && (math.IsNaN(c.MoneySaved) || !c.Proposal.Cost.Given) {
 			return true
 		}
 	}

@@ -268,3 +268,18 @@ func TestFuelInputs(t *testing.T) {
 		t.Error("took a word for a price")
 	}
 }
+
+// A circuit that an engine drives needs the price of fuel, not that of energy from the mains.
+func TestFuelAloneNeedsItsPrice(t *testing.T) {
+	c, p := shown(t, "ramp-carrier.yaml")
+	if f := c.Document.File(); f.HasPrice || !f.HasFuelPrice || p.Mend() {
+		t.Errorf("energy priced %v, fuel priced %v, to mend %v", f.HasPrice, f.HasFuelPrice, p.Mend())
+	}
+	if err := c.Document.Drop("energy.fuel_price"); err != nil {
+		t.Fatal(err)
+	}
+	again(c, p)
+	if !p.Mend() {
+		t.Error("fuel without a price is nothing to mend")
+	}
+}

@@ -8,6 +8,30 @@ import (
 	"barlitre/app/station"
 )
 
+// whole checks that a sheet that was fitted shows every block of its circuit, none cut off.
+func (b *bench) whole() {
+	b.t.Helper()
+	for i, e := range b.s.editors {
+		if !b.s.sheetShown(i) {
+			continue
+		}
+		w, h := e.room()
+		seen := map[string]bool{}
+		for _, x := range e.boxes {
+			seen[x.id] = true
+			x0, y0 := e.x+x.x*e.zoom, e.y+x.y*e.zoom
+			if x0 < 0 || y0 < 0 || x0+x.w*e.zoom > w || y0+x.h*e.zoom > h {
+				b.t.Errorf("%s of %s is cut off", x.id, e.name)
+			}
+		}
+		for j := range e.drawn.Blocks {
+			if id := e.drawn.Blocks[j].ID; !seen[id] {
+				b.t.Errorf("%s of %s is not drawn", id, e.name)
+			}
+		}
+	}
+}
+
 // The pages are drawn in every size and colour; what they show is looked at in the
 // pictures, which are written when BARLITRE_PICTURES names a folder.
 func TestPages(t *testing.T) {
@@ -15,6 +39,7 @@ func TestPages(t *testing.T) {
 	b.win.Resize(fyne.NewSize(1200, 590))
 	b.SetClock(23)
 	b.picture("circuit-light")
+	b.whole()
 	b.Select(0, "RV1")
 	b.picture("relief-light")
 	b.Select(0, "V1")
@@ -26,6 +51,7 @@ func TestPages(t *testing.T) {
 	b.theme(false, 1)
 	b.s.setWide(true)
 	b.picture("wide-light")
+	b.whole()
 	b.s.setWide(false)
 	b.s.setEnergy(false)
 	b.win.Resize(fyne.NewSize(930, 480))
@@ -38,6 +64,7 @@ func TestPages(t *testing.T) {
 	b.picture("scale-200")
 	b.s.setWide(true)
 	b.picture("scale-200-wide")
+	b.whole()
 }
 
 func TestFaultyPage(t *testing.T) {

@@ -135,6 +135,31 @@ func (b *bench) tall(circuit int, block, name string) {
 	b.picture(name)
 }
 
+// filled checks that every row of a block has a title, and a value, a default or a hint; that the block has its year
+// and, at a displacement machine, a picture.
+func (b *bench) filled(picture bool) {
+	b.t.Helper()
+	p := b.s.panel
+	if len(p.rows) == 0 {
+		b.t.Errorf("%s has no rows", b.block)
+	}
+	for _, r := range p.rows {
+		switch r := r.(type) {
+		case *numberRow:
+			if r.title.Text == "" || r.field.Text+r.field.PlaceHolder+r.note.Text == "" || r.field.Bad() {
+				b.t.Errorf("%s: the row %s shows %q", b.block, r.key(), r.field.Text)
+			}
+		case *choiceRow:
+			if r.title.Text == "" || r.sel.Selected == "" {
+				b.t.Errorf("%s: nothing is chosen in the row %s", b.block, r.key())
+			}
+		}
+	}
+	if !p.year.figure.Visible() || p.gallery.content.Visible() != picture {
+		b.t.Errorf("%s: year %v, picture %v", b.block, p.year.figure.Visible(), p.gallery.content.Visible())
+	}
+}
+
 func TestMachinePanels(t *testing.T) {
 	b, _ := openDrives(t, fyne.NewSize(1200, 590))
 	for _, c := range b.Solution().Circuits {
@@ -145,19 +170,24 @@ func TestMachinePanels(t *testing.T) {
 		}
 	}
 	for _, x := range []struct {
-		at    int
-		block string
-	}{{0, "P1"}, {0, "M1"}, {0, "E1"}, {0, "P2"}, {0, "H1"}, {1, "FC1"}, {1, "M1"}, {1, "P1"}} {
+		at      int
+		block   string
+		picture bool
+	}{{0, "P1", true}, {0, "M1", false}, {0, "E1", false}, {0, "P2", true}, {0, "H1", true}, {1, "FC1", false}, {1, "M1", false}, {1, "P1", true}} {
 		b.tall(x.at, x.block, fmt.Sprintf("panel-%d-%s", x.at, x.block))
+		b.filled(x.picture)
 	}
 	for _, s := range circuit.Sections {
 		b.s.panel.expanded[s] = true
 	}
 	b.theme(true, 1.5)
 	b.tall(0, "P1", "panel-all-dark-150")
+	b.filled(true)
 	b.tall(0, "M1", "panel-all-M1-dark-150")
+	b.filled(false)
 	b.s.panel.gallery.choose(b.s.panel.gallery.choice.Options[0])
 	b.tall(0, "P2", "panel-all-P2-dark-150")
+	b.filled(true)
 }
 
 // row finds a row of the panel by the key of its parameter.

@@ -13,45 +13,31 @@ import (
 	"barlitre/machines/units"
 )
 
-// numberRow is the row of a quantity: its number in the unit it was given in, where
-// it comes from, and behind a link its low, high and note.
+// numberRow is the row of a parameter of a block: a quantity, and behind a link its low,
+// high and note.
 type numberRow struct {
-	*fieldRow
+	*quantityRow
 	param   *circuit.Param
 	circuit string
 	block   string
-	origin  *widgets.Select
 	more    *link
 	extra   []*fieldRow
 	about   *widget.Label
 	drop    *link // takes the value out
-	filling bool
 }
 
 func (r *numberRow) key() string { return r.param.Key }
 
 func newNumberRow(p *panel, circuitName, block string, q *circuit.Param, target string) *numberRow {
 	r := &numberRow{param: q, circuit: circuitName, block: block}
-	r.fieldRow = newFieldRow(p, q.Title, "field."+q.Key, target, r.take)
+	r.quantityRow = newQuantityRow(p, q.Title, "field."+q.Key, target, r.take)
 	r.value = r.shown
-	r.origin = widgets.NewSelect(words(circuit.Origins), r.setOrigin)
-	r.origin.PlaceHolder = "origin?"
-	widgets.Name(r.origin, "field."+q.Key+".origin")
 	r.more = newLink("more", r.toggle)
 	widgets.Name(r.more, "field."+q.Key+".more")
 	r.head.Add(r.more)
 	r.drop = widgets.Name(newLink("Drop this value; its default then holds", r.takeOut), "field."+q.Key+".drop")
 	r.drop.lead = true
-	r.stack(container.New(columns{0.5, 0.5}, r.field, r.origin))
 	return r
-}
-
-func words(list []circuit.Origin) []string {
-	var out []string
-	for _, o := range list {
-		out = append(out, string(o))
-	}
-	return out
 }
 
 // now is the value in the file; given is false for a default or none.
@@ -79,25 +65,14 @@ func (r *numberRow) unitNow() units.Unit {
 	return units.Preferred(r.param.Dim, sys)
 }
 
-// number is a value in a unit without the unit, as typed.
-func (r *numberRow) number(si float64, u units.Unit) string {
-	if math.IsNaN(si) || math.IsInf(si, 0) {
-		return ""
-	}
-	text := strings.TrimSuffix(units.FileText(si, u), " "+u.Symbol)
-	return r.p.s.ctx.Local(text)
-}
-
 // shown is what stands in the row.
 func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 	u := r.unitNow()
 	v, given := r.now()
-	if r.drop != nil {
-		show(r.drop, given && !r.param.Need)
-	}
+	show(r.drop, given && !r.param.Need)
 	if given {
 		r.fillOrigin(v, true)
-		return r.number(v.SI, u), r.givenHint(v, u), "", u.Label()
+		return r.number(v.SI, u), r.hint(v, u, r.rangeText(u)), "", u.Label()
 	}
 	b := r.p.block(r.circuit, r.block)
 	if b == nil {
@@ -109,22 +84,6 @@ func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 		return "", "not given; " + r.param.Text + join("; follows from ", r.param.Derived) + "; " + r.rangeText(u), "", u.Label()
 	}
 	return "", "default" + reason(v) + "; " + r.rangeText(u), r.number(v.SI, u), u.Label()
-}
-
-// givenHint is what is known of a value besides, and what it may be.
-func (r *numberRow) givenHint(v circuit.Value, u units.Unit) string {
-	var notes []string
-	if low := r.number(v.Low, u); low != "" {
-		notes = append(notes, "low "+low)
-	}
-	if high := r.number(v.High, u); high != "" {
-		notes = append(notes, "high "+high)
-	}
-	notes = append(notes, r.rangeText(u))
-	if v.Note != "" {
-		notes = append(notes, v.Note)
-	}
-	return strings.Join(notes, " · ")
 }
 
 // rangeText says what the parameter may be, in the unit of the row.
@@ -156,27 +115,6 @@ func plain(text string) string {
 	return mantissa
 }
 
-// fillOrigin shows where the value comes from; a default has an origin of its own,
-// which cannot be changed.
-func (r *numberRow) fillOrigin(v circuit.Value, given bool) {
-	if r.origin == nil {
-		return
-	}
-	r.filling = true
-	defer func() { r.filling = false }()
-	if r.origin.Selected != string(v.Origin) {
-		r.origin.Selected = string(v.Origin)
-		r.origin.Refresh()
-	}
-	if given == r.origin.Disabled() {
-		if given {
-			r.origin.Enable()
-		} else {
-			r.origin.Disable()
-		}
-	}
-}
-
 var errEmpty = errors.New("the field is empty; write a value, or press Escape to bring the old one back")
 
 // take reads what was typed, in any unit of the quantity, and hands it to the
@@ -206,17 +144,6 @@ func (r *numberRow) takeOut() {
 	if err != nil {
 		r.say(err.Error(), true)
 	}
-	r.p.relay()
-}
-
-func (r *numberRow) setOrigin(text string) {
-	if r.filling || text == "" {
-		return
-	}
-	if err := r.p.s.ctx.Doc().Set(r.target+".origin", text); err != nil {
-		r.say(err.Error(), true)
-	}
-	r.fill()
 	r.p.relay()
 }
 

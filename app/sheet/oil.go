@@ -1,14 +1,10 @@
 package sheet
 
 import (
-	"math"
-	"strings"
-
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
-	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/circuit"
 	"barlitre/machines/units"
@@ -36,22 +32,17 @@ func (r *headRow) fill()                     {}
 func (r *headRow) keep()                     {}
 func (r *headRow) focus() fyne.Focusable     { return nil }
 
-// oilRow is the row of a number of the oil: its value, and where it comes from.
+// oilRow is the row of a quantity of the oil.
 type oilRow struct {
-	*fieldRow
-	of      string // its key in the file
-	origin  *widgets.Select
-	filling bool
+	*quantityRow
+	of string // its key in the file
 }
 
 func newOilRow(p *panel, v audit.OilValue) *oilRow {
 	r := &oilRow{of: v.Key}
 	target := "oil." + v.Key
-	r.fieldRow = newFieldRow(p, v.Title, "field."+target, target, r.take)
+	r.quantityRow = newQuantityRow(p, v.Title, "field."+target, target, r.take)
 	r.value = r.shown
-	r.origin = widgets.Name(widgets.NewSelect(words(circuit.Origins), r.setOrigin), "field."+target+".origin")
-	r.origin.PlaceHolder = "origin?"
-	r.stack(container.New(columns{0.5, 0.5}, r.field, r.origin))
 	return r
 }
 
@@ -75,18 +66,10 @@ func (r *oilRow) unitOf(v audit.OilValue) units.Unit {
 	return units.Preferred(v.Dim, r.p.s.ctx.System())
 }
 
-// number is a value in a unit without the unit, "" where there is none.
-func (r *oilRow) number(si float64, u units.Unit) string {
-	if math.IsNaN(si) {
-		return ""
-	}
-	return r.p.s.ctx.Local(strings.TrimSpace(strings.TrimSuffix(units.FileText(si, u), u.Symbol)))
-}
-
 func (r *oilRow) shown() (text, hint, placeholder, unit string) {
 	v := r.now()
 	u := r.unitOf(v)
-	r.showOrigin(v)
+	r.fillOrigin(v.Value, v.Given)
 	if !v.Given {
 		hint, placeholder = "not given; "+v.Text, ""
 		if v.Known {
@@ -94,37 +77,7 @@ func (r *oilRow) shown() (text, hint, placeholder, unit string) {
 		}
 		return "", hint, placeholder, u.Label()
 	}
-	var notes []string
-	for _, end := range []struct {
-		word string
-		si   float64
-	}{{"low ", v.Value.Low}, {"high ", v.Value.High}} {
-		if n := r.number(end.si, u); n != "" {
-			notes = append(notes, end.word+n)
-		}
-	}
-	notes = append(notes, v.Text)
-	if v.Value.Note != "" {
-		notes = append(notes, v.Value.Note)
-	}
-	return r.number(v.Value.SI, u), strings.Join(notes, " · "), "", u.Label()
-}
-
-func (r *oilRow) showOrigin(v audit.OilValue) {
-	if r.origin == nil {
-		return
-	}
-	r.filling = true
-	defer func() { r.filling = false }()
-	if r.origin.Selected != string(v.Value.Origin) {
-		r.origin.Selected = string(v.Value.Origin)
-		r.origin.Refresh()
-	}
-	if v.Given {
-		r.origin.Enable()
-	} else {
-		r.origin.Disable()
-	}
+	return r.number(v.Value.SI, u), r.hint(v.Value, u, v.Text), "", u.Label()
 }
 
 // take reads what was typed; an empty field brings the default back.
@@ -141,17 +94,6 @@ func (r *oilRow) take(text string) error {
 		return err
 	}
 	return doc.Put(r.target, units.FileText(si, u))
-}
-
-func (r *oilRow) setOrigin(text string) {
-	if r.filling || text == "" {
-		return
-	}
-	if err := r.p.s.ctx.Doc().Set(r.target+".origin", text); err != nil {
-		r.say(err.Error(), true)
-	}
-	r.fill()
-	r.p.relay()
 }
 
 // suitsRow says how the oil suits the machines of the circuit at hand.

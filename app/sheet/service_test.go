@@ -14,6 +14,7 @@ func TestServicePanel(t *testing.T) {
 	b.win.Resize(fyne.NewSize(1400, 900))
 	b.SetClock(14)
 	b.picture("station-light")
+	b.whole()
 	b.Select(1, "")
 	b.s.setWide(true)
 	b.picture("services-wide")
@@ -42,4 +43,5 @@ func TestCarrierPage(t *testing.T) {
 	b.win.Resize(fyne.NewSize(1400, 900))
 	b.SetClock(4)
 	b.picture("carrier-light")
+	b.whole()
 }

@@ -103,6 +103,7 @@ func (h *shelf) key(k fyne.KeyName) bool {
 func (h *shelf) close() {
 	h.pop.Hide()
 	h.e.focus()
+	h.e.s.ctx.Say("")
 }
 
 // choose puts a block of a kind on the sheet; "" is a place beside the rows.

@@ -38,10 +38,10 @@ func (w *wire) build(e *editor) {
 }
 
 func (w *wire) recolour() {
-	pal := w.e.s.ctx.Palette()
-	w.line.StrokeColor, w.line.StrokeWidth = pal.Gain, 2
+	pal, stroke := w.e.s.ctx.Palette(), 2*widgets.Scale()
+	w.line.StrokeColor, w.line.StrokeWidth = pal.Gain, stroke
 	for _, r := range w.rings {
-		r.StrokeColor, r.StrokeWidth = pal.Gain, 2
+		r.StrokeColor, r.StrokeWidth = pal.Gain, stroke
 	}
 	for _, d := range w.dots {
 		d.FillColor = pal.Gain
@@ -107,7 +107,7 @@ func (e *editor) portAt(at fyne.Position) *figures.SheetPort {
 		return nil
 	}
 	x, y := e.at(at)
-	least := math.Max(0.7, math.Min(1.2, portRing/e.zoom)) // [M]
+	least := math.Max(0.7, math.Min(1.2, portRing*float64(widgets.Scale())/e.zoom)) // [M]
 	var found *figures.SheetPort
 	for i := range e.ports {
 		p := &e.ports[i]

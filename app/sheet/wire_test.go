@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"bytes"
+	"fmt"
 	"slices"
 	"strings"
 	"testing"
@@ -73,6 +74,30 @@ func TestDragConnectsPorts(t *testing.T) {
 		t.Errorf("the rubber line stays: %v; %d lines are drawn", e.wire.line.Visible(), e.sheet.Nets())
 	}
 	b.undone(before, "Connect P1.P and RV1.P")
+}
+
+// The gestures work in every size: a port is caught anywhere in its ring.
+func TestDragConnectsAtAnyScale(t *testing.T) {
+	for _, scale := range []float32{1, 1.5, 2} {
+		b := drawing(t)
+		b.theme(scale > 1, scale)
+		b.s.fitAll()
+		e := b.s.editors[0]
+		e.zoomAt(0, 0, 7/e.zoom) // small, so that the ring is large to the drawing
+		near := float32(portRing-2) * scale
+		from, to := b.port(0, "P1.P").AddXY(-near, 0), b.port(0, "RV1.P").AddXY(0, -near)
+		e.MouseDown(event(from, desktop.MouseButtonPrimary, 0))
+		b.dragOn(0, from, to)
+		b.picture(fmt.Sprintf("wire-%.0f", 100*scale))
+		if w := &e.wire; !w.line.Visible() || !w.rings[1].Visible() || w.line.StrokeColor != b.Palette().Gain {
+			t.Errorf("scale %g: line %v, ring %v, %v", scale, w.line.Visible(), w.rings[1].Visible(), w.line.StrokeColor)
+		}
+		e.DragEnd()
+		b.pump()
+		if got := b.line(0, "P1.P"); !slices.Equal(got, []string{"P1.P", "RV1.P"}) {
+			t.Errorf("scale %g: P1.P stands on %v; said %q", scale, got, b.said)
+		}
+	}
 }
 
 func TestDragConnectsToALine(t *testing.T) {

@@ -3,6 +3,7 @@ package widgets
 import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/theme"
 	"fyne.io/fyne/v2/widget"
 )
 
@@ -25,7 +26,7 @@ func Row(name string, o fyne.CanvasObject, note *widget.Label) fyne.CanvasObject
 }
 
 // rowLayout: the name in a column of fixed width and the object beside it, or below it
-// where that leaves too little room; the note under the object.
+// where name or object have too little room; the note under the object.
 type rowLayout struct{ stacked bool }
 
 const rowName = 128 // width of the names, at scale 1
@@ -44,7 +45,7 @@ func (l *rowLayout) Layout(objects []fyne.CanvasObject, size fyne.Size) {
 	name := objects[0].MinSize().Height
 	h := objects[1].MinSize().Height
 	x, y := rowName*Scale(), float32(0)
-	if l.stacked = size.Width < max(2*x, x+objects[1].MinSize().Width); l.stacked {
+	if l.stacked = nameWidth(objects[0]) > x || size.Width < max(2*x, x+objects[1].MinSize().Width); l.stacked {
 		objects[0].Move(fyne.NewPos(0, 0))
 		objects[0].Resize(fyne.NewSize(size.Width, name))
 		x, y = 0, name
@@ -65,6 +66,11 @@ func (l *rowLayout) Layout(objects []fyne.CanvasObject, size fyne.Size) {
 	} else {
 		objects[2].Show()
 	}
+}
+
+// nameWidth is what a name asks for to be read whole.
+func nameWidth(o fyne.CanvasObject) float32 {
+	return fyne.MeasureText(o.(*widget.Label).Text, theme.TextSize(), fyne.TextStyle{}).Width + 2*theme.InnerPadding()
 }
 
 // MinSize is as high as the last layout asked for.

@@ -124,28 +124,29 @@ func (t Theme) Font(s fyne.TextStyle) fyne.Resource {
 func (t Theme) Icon(n fyne.ThemeIconName) fyne.Resource { return theme.DefaultTheme().Icon(n) }
 
 // Size returns sizes of a desktop, not of a phone.
-func (t Theme) Size(n fyne.ThemeSizeName) float32 {
-	return t.scale() * map[fyne.ThemeSizeName]float32{
-		theme.SizeNameText:                 12.5,
-		theme.SizeNameCaptionText:          11,
-		theme.SizeNameSubHeadingText:       14,
-		theme.SizeNameHeadingText:          17,
-		theme.SizeNamePadding:              4,
-		theme.SizeNameInnerPadding:         6,
-		theme.SizeNameInlineIcon:           16,
-		theme.SizeNameLineSpacing:          3,
-		theme.SizeNameSeparatorThickness:   1,
-		theme.SizeNameInputBorder:          1,
-		theme.SizeNameInputRadius:          4,
-		theme.SizeNameSelectionRadius:      4,
-		theme.SizeNameScrollBar:            10,
-		theme.SizeNameScrollBarSmall:       4,
-		theme.SizeNameScrollBarRadius:      4,
-		theme.SizeNameWindowButtonHeight:   16,
-		theme.SizeNameWindowButtonRadius:   8,
-		theme.SizeNameWindowButtonIcon:     14,
-		theme.SizeNameWindowTitleBarHeight: 26,
-	}[n]
+func (t Theme) Size(n fyne.ThemeSizeName) float32 { return t.scale() * sizes[n] }
+
+// sizes are those at scale 1; the toolkit asks for one with every text it measures.
+var sizes = map[fyne.ThemeSizeName]float32{
+	theme.SizeNameText:                 12.5,
+	theme.SizeNameCaptionText:          11,
+	theme.SizeNameSubHeadingText:       14,
+	theme.SizeNameHeadingText:          17,
+	theme.SizeNamePadding:              4,
+	theme.SizeNameInnerPadding:         6,
+	theme.SizeNameInlineIcon:           16,
+	theme.SizeNameLineSpacing:          3,
+	theme.SizeNameSeparatorThickness:   1,
+	theme.SizeNameInputBorder:          1,
+	theme.SizeNameInputRadius:          4,
+	theme.SizeNameSelectionRadius:      4,
+	theme.SizeNameScrollBar:            10,
+	theme.SizeNameScrollBarSmall:       4,
+	theme.SizeNameScrollBarRadius:      4,
+	theme.SizeNameWindowButtonHeight:   16,
+	theme.SizeNameWindowButtonRadius:   8,
+	theme.SizeNameWindowButtonIcon:     14,
+	theme.SizeNameWindowTitleBarHeight: 26,
 }
 
 func (t Theme) scale() float32 {
