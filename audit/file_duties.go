@@ -93,17 +93,24 @@ func (f *File) RemoveDuty(name string) error {
 // dutyKeys are what SetDuty reaches.
 var dutyKeys = []string{"hours", "repeats", "step", "instants", "note"}
 
-// SetDuty sets what a duty has besides its table: hours, repeats, step, instants, note.
+// SetDuty sets what a duty has besides its table: hours, repeats, step, instants, note;
+// "" takes it out.
 func (f *File) SetDuty(name, key, value string) error {
 	i, err := f.dutyNamed(name)
 	if err != nil {
 		return err
 	}
 	value = strings.TrimSpace(value)
-	if !slices.Contains(dutyKeys, key) || value == "" {
-		return fmt.Errorf("duty %q: %s: give one of %s, and its value", name, key, strings.Join(dutyKeys, ", "))
+	if !slices.Contains(dutyKeys, key) {
+		return fmt.Errorf("duty %q: %s: give one of %s", name, key, strings.Join(dutyKeys, ", "))
 	}
 	d := f.draft()
+	if value == "" {
+		if child(d.duty(i), key) == nil {
+			return nil
+		}
+		return f.dutyEdit(d, i, d.cutKey(d.duty(i), key), func(g *File) bool { return child(g.dutyNode(i), key) == nil })
+	}
 	err = d.one(d.src.put(d.duty(i), key, encode(value, key == "note")))
 	return f.dutyEdit(d, i, err, func(g *File) bool {
 		return written(child(child(g.dutyNode(i), key), "value"), child(g.dutyNode(i), key)) == value

@@ -187,12 +187,17 @@ func (f *File) SetTable(dutyName string, heads []string, columns [][]string) err
 	var splices []splice
 	var added []string
 	for k, head := range heads {
+		name, unit, _ := recording.SplitHead(head)
+		dim, _ := f.trackQuantity(name)
 		var words []string
 		for _, v := range columns[k] {
-			words = append(words, encode(strings.TrimSpace(v), false))
+			v = strings.TrimSpace(v)
+			if text, _, err := point(v, unit, dim); err == nil {
+				v = text // in the unit of its head
+			}
+			words = append(words, encode(v, false))
 		}
 		text := "[" + strings.Join(words, ", ") + "]"
-		name, _, _ := recording.SplitHead(head)
 		old := slices.IndexFunc(mappingKeys(points), func(n *yaml.Node) bool { was, _, _ := recording.SplitHead(n.Value); return was == name })
 		if old < 0 {
 			added = append(added, encode(head, true)+": "+text)
