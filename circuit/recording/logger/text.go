@@ -33,15 +33,16 @@ func Open(path string) (*File, error) {
 	if err != nil {
 		return nil, err
 	}
-	return open(filepath.Base(path), info.Size(), func() (io.ReadCloser, error) { return os.Open(path) })
+	return OpenSource(filepath.Base(path), info.Size(), func() (io.ReadCloser, error) { return os.Open(path) })
 }
 
 // OpenBytes opens a file that is in memory.
 func OpenBytes(name string, data []byte) (*File, error) {
-	return open(name, int64(len(data)), func() (io.ReadCloser, error) { return io.NopCloser(bytes.NewReader(data)), nil })
+	return OpenSource(name, int64(len(data)), func() (io.ReadCloser, error) { return io.NopCloser(bytes.NewReader(data)), nil })
 }
 
-func open(name string, size int64, reopen func() (io.ReadCloser, error)) (*File, error) {
+// OpenSource opens what reopen gives from its start, again and again; size is in bytes.
+func OpenSource(name string, size int64, reopen func() (io.ReadCloser, error)) (*File, error) {
 	f := &File{Name: name, Size: size, open: reopen}
 	in, err := reopen()
 	if err != nil {
