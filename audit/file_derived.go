@@ -6,6 +6,7 @@ import (
 	"gopkg.in/yaml.v3"
 
 	"barlitre/circuit/duty"
+	"barlitre/circuit/logged"
 	"barlitre/circuit/recording/channels"
 	"barlitre/circuit/recording/logger"
 	"barlitre/machines/units"
@@ -20,7 +21,7 @@ const (
 	lawTurned   = "sign turned"
 )
 
-var laws = []string{lawPosition, lawFlow, lawChambers, lawMotor, lawTurned}
+var laws = []string{lawPosition, lawFlow, lawChambers, lawMotor, lawTurned, logged.Scaled, logged.OfPower, logged.Constant}
 
 // derivation reads one derived track.
 type derivation struct {
@@ -43,7 +44,7 @@ func (r *reader) derived(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.N
 		}
 		of := in.in(e.key)
 		f := r.fields(of, e.value, "", "law", "column", "position", "speed", "flow", "a", "b", "bore", "rod", "friction", "damping", "mass", "window",
-			"displacement", "gear", "efficiency", "volumetric", "inertia")
+			"displacement", "gear", "efficiency", "volumetric", "inertia", "factor", "offset", "power", "value")
 		v := &derivation{r, of, f, rec, e.value, dim, true}
 		before := len(r.found)
 		tr := v.track()
@@ -65,7 +66,13 @@ func (v *derivation) track() channels.Track {
 		return channels.Track{}
 	}
 	rotary := v.dim == units.AngularSpeed || v.dim == units.Torque
-	want := map[string][]units.Dim{lawPosition: {units.Velocity, units.AngularSpeed}, lawFlow: {units.Velocity, units.AngularSpeed}, lawChambers: {units.Force}, lawMotor: {units.Torque}, lawTurned: {v.dim}}[law]
+	switch law {
+	case logged.Scaled:
+		return v.scaled()
+	case logged.Constant:
+		return v.constant()
+	}
+	want := map[string][]units.Dim{lawPosition: {units.Velocity, units.AngularSpeed}, lawFlow: {units.Velocity, units.AngularSpeed}, lawChambers: {units.Force}, lawMotor: {units.Torque}, lawTurned: {v.dim}, logged.OfPower: {units.Force, units.Torque}}[law]
 	if v.dim != want[0] && v.dim != want[len(want)-1] {
 		v.bad(v.s, v.at, "law", "%q gives a %s, this track is a %s", law, want[0].Name(), v.dim.Name())
 		return channels.Track{}
@@ -79,6 +86,8 @@ func (v *derivation) track() channels.Track {
 		return v.chambers()
 	case lawMotor:
 		return v.motor()
+	case logged.OfPower:
+		return v.power(rotary)
 	}
 	x := v.channelOf("column", v.dim, true)
 	out := channels.Track{Values: make([]float64, len(x)), Formula: "minus " + v.f["column"].text()}

@@ -13,6 +13,7 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/circuit/logged"
 	"barlitre/circuit/recording/logger"
 	"barlitre/machines/units"
 )
@@ -29,6 +30,7 @@ type Import struct {
 	Corrections  []logger.Correction
 	Marks        []logger.Mark
 	Derived      []Derived
+	Part         logged.Part // of the recording, that makes the duty
 }
 
 // Derived is a track that was worked out from channels.
