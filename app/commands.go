@@ -27,6 +27,7 @@ var commands = []command{
 	{"check", "FILE...", "say whether the circuits of audit files can be solved, and what stands out", check},
 	{"audit", "FILE... [-set [CIRCUIT/]BLOCK.PARAM=QUANTITY]... [-json OUT|-] [-csv DIR] [-pdf OUT] [-units metric|us|si]", "balance the circuits and print their energy, heat and cost", auditFiles},
 	{"fit", "POINTS.csv [-displacement QUANTITY] [-viscosity QUANTITY] [-bulk QUANTITY] [-png DIR]", "fit the loss coefficients of a pump or motor to measured points", fit},
+	{"import", "RECORDING.csv [-rows N] [-answer FIELD=CHOICE]... [-choose KEY=CHOICE]... [-rate EFFORT,FLOW] [-cycles CHANNEL,... [-held CHANNEL,...]] [-yaml]", "read the recording of a data logger: what it seems to be, what is wrong with it, whether it is fast enough, which cycles it holds", importFile},
 	{"blocks", "[KIND]", "list the kinds of block, or all that is known of one", blocks},
 }
 

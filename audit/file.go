@@ -150,8 +150,9 @@ type File struct {
 
 	Axes     []duty.Axis
 	Duties   []*duty.Duty
-	Sources  []Source  // by duty; the zero Source where the points stand in the audit file
-	Imports  []*Import // by duty; nil where no recipe says how its recording is read
+	Sources  []Source     // by duty; the zero Source where the points stand in the audit file
+	Imports  []*Import    // by duty; nil where no recipe says how its recording is read
+	Rates    [][]AxisRate // by duty; how well a recording tells the energy of its axes
 	Circuits []CircuitEntry
 
 	data   []byte

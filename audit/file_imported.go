@@ -29,12 +29,16 @@ type Import struct {
 	Start        string  // date and clock of the first row, where the recording has them
 	Corrections  []logger.Correction
 	Marks        []logger.Mark
+	Columns      map[string]string // by track, the channel it is
 	Derived      []Derived
 	Part         logged.Part // of the recording, that makes the duty
 }
 
 // Derived is a track that was worked out from channels.
-type Derived struct{ Track, Formula string }
+type Derived struct {
+	Track, Formula string
+	Says           map[string]string // as the file has it
+}
 
 // imported reads the rows of a duty from a logger's recording by the recipe under import.
 func (r *reader) imported(s scope, d *duty.Duty, f map[string]entry) Source {
@@ -63,7 +67,7 @@ func (r *reader) imported(s scope, d *duty.Duty, f map[string]entry) Source {
 		r.told(s, level, file.value, name+": "+c.String())
 	}
 	d.Time = rec.Time
-	r.channelTracks(s, d, rec, name, f["columns"].value)
+	im.Columns = r.channelTracks(s, d, rec, f["columns"].value)
 	im.Derived = r.derived(s, d, rec, f["derived"].value)
 	r.file.Imports[len(r.file.Imports)-1] = im
 	return Source{File: name, SHA256: rec.SHA256}
@@ -174,7 +178,8 @@ func (f *File) importFile(name string, rp logger.Recipe) (*logger.Recording, err
 }
 
 // channelTracks takes channels as they are: which track is which column.
-func (r *reader) channelTracks(s scope, d *duty.Duty, rec *logger.Recording, file string, n *yaml.Node) {
+func (r *reader) channelTracks(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.Node) map[string]string {
+	out := map[string]string{}
 	in := s.in("columns")
 	for _, e := range r.entries(s, n, "columns") {
 		if e.key == "t" {
@@ -191,8 +196,10 @@ func (r *reader) channelTracks(s scope, d *duty.Duty, rec *logger.Recording, fil
 		}
 		if v := r.channel(in, rec, e.value, e.key, column, dim); v != nil {
 			r.keep(d, e.key, v)
+			out[e.key] = column
 		}
 	}
+	return out
 }
 
 // channel returns the values of a column that must be of a quantity.
