@@ -1,6 +1,7 @@
 package audit_test
 
 import (
+	"context"
 	"encoding/csv"
 	"math"
 	"os"
@@ -9,6 +10,8 @@ import (
 	"testing"
 
 	"barlitre/audit"
+	"barlitre/circuit/logged"
+	"barlitre/circuit/recording/logger"
 )
 
 // The four-axis duty is a recording of a small excavator that loads a truck: published
@@ -144,6 +147,42 @@ func TestFourAxisLoadSensing(t *testing.T) {
 	}
 	near(t, "shaft [kJ], published", b.SupplyIn.Total()/1e3, 1344, 0.2, 0)
 	t.Logf("shaft %.1f kJ with a margin of 20 bar, published 1344.0 kJ", b.SupplyIn.Total()/1e3)
+}
+
+// The recording taken in by guess and suggestion, nothing typed, makes the same tracks: the
+// work is the published one, with time steps at the rows.
+func TestFourAxisTakenIn(t *testing.T) {
+	path := fourAxisFile(t, "four-axis.yaml")
+	f, found := audit.Read(path)
+	if len(found) > 0 {
+		t.Fatal(found)
+	}
+	file, err := logger.Open(filepath.Join(filepath.Dir(path), fourAxisRecording))
+	if err != nil {
+		t.Fatal(err)
+	}
+	rec, err := file.Import(context.Background(), file.Guess(), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := logged.Suggest(rec.Series, logged.Machine{Axes: f.Axes})
+	if len(s.Axes) > 0 || len(s.Tracks) != 8 {
+		t.Fatalf("suggests %+v", s)
+	}
+	if err := f.TakeIn(audit.Taking{Duty: "taken in", File: fourAxisRecording, Kept: audit.Keep(rec), Tracks: s.Tracks,
+		Keys: map[string]string{"hours": "1500 h", "instants": "no"}}); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.RemoveDuty("truck loading"); err != nil {
+		t.Fatal(err)
+	}
+	d := solved(t, f).Circuits[0].Duties[0]
+	sound(t, d)
+	near(t, "positive work [kJ], published", d.Balance.WorkPositive().Total()/1e3, 485.63, 5e-4, 0)
+	near(t, "negative work [kJ], published", d.Balance.WorkNegative().Total()/1e3, -208.07, 5e-4, 0)
+	if len(d.Shortfalls) > 0 {
+		t.Errorf("shortfall: %+v", d.Shortfalls)
+	}
 }
 
 // Independent calculation from force, speed and area: 838.5, 1029.9 and 1077.7 kJ at margins
