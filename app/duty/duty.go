@@ -37,6 +37,9 @@ type Station struct {
 	ground  *canvas.Rectangle
 	loading bool
 
+	station    fyne.CanvasObject // all but the page of recordings
+	recordings *recordings
+
 	shown  *cycle.Duty // of the file that is shown
 	of     string      // name of the duty in the table
 	tracks []track
@@ -77,20 +80,22 @@ func (s *Station) build() {
 	s.refusal.Importance = widget.LowImportance
 	s.table = widgets.Name(s.newTable(), "duty.table")
 	s.notes = container.NewVBox()
+	s.recordings = newRecordings(s)
 	s.panel = newPanel(s)
 	s.pages = newPages(s)
 	s.ground = canvas.NewRectangle(s.ctx.Palette().Card)
 	s.filled = s.lay()
 	empty := widgets.Name(widget.NewLabelWithStyle(
 		"No duty yet. A duty says what each axis must do over time: how fast, against which load, how many hours a year.\n"+
-			"Add one here with New duty, after the axes of the machine are named.",
+			"Add one here with New duty, after the axes of the machine are named, or make one of what a data logger recorded.",
 		fyne.TextAlignCenter, fyne.TextStyle{}), "duty.empty")
 	empty.Wrapping = fyne.TextWrapWord
-	s.empty = container.NewPadded(empty)
+	s.empty = container.NewPadded(container.NewBorder(empty, nil, nil, nil, container.NewVBox(container.NewCenter(s.recordings.button("duty.empty.recording")))))
 	side := container.NewVScroll(s.panel.content)
 	split := container.NewHSplit(container.NewStack(s.filled, s.empty), side)
 	split.Offset = 0.7
-	s.content = widgets.Spaced(split)
+	s.station = widgets.Spaced(split)
+	s.content = container.NewStack(s.station, s.recordings.page.Content())
 }
 
 // lay puts the parts of a duty together.
@@ -105,6 +110,9 @@ func (s *Station) lay() fyne.CanvasObject {
 
 // Changed shows what changed.
 func (s *Station) Changed(w station.What) {
+	if s.recordings.open {
+		s.recordings.page.Changed(w)
+	}
 	switch {
 	case w.Has(station.Model | station.Settings):
 		s.reload()
@@ -206,6 +214,9 @@ func (s *Station) factsOf(d *cycle.Duty) string {
 
 // locked says why the points of the duty at hand cannot be changed here, "" if they can.
 func (s *Station) locked() string {
+	if s.imported() != nil {
+		return "imported from a recording; change the import"
+	}
 	if src := s.recorded().File; src != "" {
 		return "read from " + src + "; change it there"
 	}

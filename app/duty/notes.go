@@ -22,7 +22,9 @@ func (s *Station) fillNotes() {
 	}
 	s.notes.Objects = nil
 	s.note("", "Notes", widget.MediumImportance, true)
-	if text := s.sourceOf(d); text != "" {
+	if im := s.imported(); im != nil {
+		s.importNotes(im)
+	} else if text := s.sourceOf(d); text != "" {
 		setText(s.source, text)
 		s.notes.Add(s.source)
 	}
@@ -111,6 +113,8 @@ func (s *Station) standstill(d *cycle.Duty) [][2]string {
 	}
 	return out
 }
+
+func (s *Station) seconds(t float64) string { return s.ctx.Text(t, units.Time, 4) }
 
 // slow writes a speed that is too small for the user's unit.
 func (s *Station) slow(v float64, dim units.Dim) string {

@@ -52,7 +52,7 @@ func newPanel(s *Station) *panel {
 		widgets.FieldRow("Time step", p.step), p.repeats)
 	add := widgets.Name(widgets.NewButton("New duty", p.newDuty), "duty.new")
 	p.content = container.NewVBox(
-		widgets.Card("This duty", container.NewVBox(p.own, container.NewHBox(add, p.change))),
+		widgets.Card("This duty", container.NewVBox(p.own, container.NewHBox(add, p.change), container.NewHBox(s.recordings.button("duty.recording")))),
 		widget.NewSeparator(),
 		widgets.Card("Axes and their tracks", container.NewVBox(p.axes, widgets.FieldRow("Add an axis", p.added), p.blocks)),
 		widget.NewSeparator(), s.notes)

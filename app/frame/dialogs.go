@@ -3,6 +3,7 @@ package frame
 import (
 	"os"
 	"path/filepath"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -107,6 +108,60 @@ func (f *Frame) askOpen() {
 	}, f.win)
 	d.SetFilter(storage.NewExtensionFileFilter([]string{".yaml", ".yml"}))
 	f.showFiles(d, "Open an audit", "Open")
+}
+
+// PickFile asks for a file to read. Scripts may give it instead.
+func (f *Frame) PickFile(title, verb string, endings []string, then func(path string)) {
+	if path := os.Getenv(openFileVariable); path != "" {
+		then(path)
+		return
+	}
+	d := dialog.NewFileOpen(func(r fyne.URIReadCloser, err error) {
+		if err != nil {
+			f.Fail(err)
+		} else if r != nil {
+			path := r.URI().Path()
+			r.Close()
+			then(path)
+		}
+	}, f.win)
+	var both []string
+	for _, e := range endings {
+		both = append(both, e, strings.ToUpper(e))
+	}
+	d.SetFilter(storage.NewExtensionFileFilter(both))
+	f.showFiles(d, title, verb)
+}
+
+// openFileVariable names the file that scripts pick, without a dialog.
+const openFileVariable = "BARLITRE_OPEN_FILE"
+
+// SaveFirst says why the audit needs a place, and asks for one.
+func (f *Frame) SaveFirst(why string, then func()) {
+	f.ask("Save the audit first", paragraph(why, 420), answer{verb: "Save as…", do: func() { f.saveAs(then) }}, answer{verb: "Cancel"})
+}
+
+// recordings is the station that takes recordings in, shown first.
+func (f *Frame) recordings(do func(station.Recordings)) {
+	for i, s := range f.stations {
+		if r, ok := s.(station.Recordings); ok {
+			f.show(i)
+			do(r)
+			return
+		}
+	}
+}
+
+// dropped opens an audit, or takes a recording in.
+func (f *Frame) dropped(path string) {
+	if f.asking() {
+		return
+	}
+	if slices.Contains(station.RecordingEndings, strings.ToLower(filepath.Ext(path))) {
+		f.recordings(func(r station.Recordings) { r.TakeIn(path) })
+		return
+	}
+	f.leave(func() { f.open(path) })
 }
 
 // showFiles opens a file dialog where the open file is.

@@ -75,7 +75,7 @@ func New(app fyne.App, opt document.Options, stations ...func(station.Context) s
 	f.win.SetCloseIntercept(f.quit)
 	f.win.SetOnDropped(func(_ fyne.Position, uris []fyne.URI) {
 		if len(uris) > 0 {
-			f.leave(func() { f.open(uris[0].Path()) })
+			f.dropped(uris[0].Path())
 		}
 	})
 	f.dumper = newDumper(f)

@@ -46,6 +46,16 @@ type Station interface {
 	Help() string
 }
 
+// Recordings is a station that takes in what a logger recorded.
+type Recordings interface {
+	// PickRecording asks for a file, TakeIn begins with one.
+	PickRecording()
+	TakeIn(path string)
+}
+
+// RecordingEndings are how names of loggers' files end.
+var RecordingEndings = []string{".csv", ".tsv", ".txt", ".dat", ".asc", ".log", ".prn"}
+
 // Context is what stations read and act through. The frame implements it.
 type Context interface {
 	Doc() *document.Document
@@ -74,6 +84,10 @@ type Context interface {
 	Local(text string) string
 	Palette() figures.Palette
 
+	// PickFile asks for a file to read; endings are like ".csv".
+	PickFile(title, verb string, endings []string, then func(path string))
+	// SaveFirst says why the audit needs a place, lets the user give it one, then goes on.
+	SaveFirst(why string, then func())
 	// Go shows a station by name.
 	Go(name string)
 	// Keep takes a dialog that the station has shown: Escape then closes it, and the menu waits.

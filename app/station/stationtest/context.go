@@ -34,6 +34,8 @@ type Context struct {
 	Failed    []error
 	Went      []string
 	Kept      []dialog.Dialog
+	Picked    string // the file that the user picks, "" = none
+	SaveTo    string // where the user saves
 }
 
 // New opens a sample, "" for the empty audit, and waits until it is solved.
@@ -126,6 +128,26 @@ func (c *Context) Keep(d dialog.Dialog)     { c.Kept = append(c.Kept, d) }
 func (c *Context) Say(text string)          { c.Said = append(c.Said, text) }
 func (c *Context) Fail(err error)           { c.Failed = append(c.Failed, err) }
 func (c *Context) Palette() figures.Palette { return widgets.Theme{Dark: c.Dark}.Palette() }
+
+// PickFile picks Picked.
+func (c *Context) PickFile(_, _ string, _ []string, then func(path string)) {
+	if c.Picked != "" {
+		then(c.Picked)
+	}
+}
+
+// SaveFirst saves to SaveTo.
+func (c *Context) SaveFirst(why string, then func()) {
+	c.Said = append(c.Said, why)
+	if c.SaveTo == "" {
+		return
+	}
+	if err := c.Document.SaveAs(c.SaveTo); err != nil {
+		c.Fail(err)
+		return
+	}
+	then()
+}
 
 // Solution is that of the document.
 func (c *Context) Solution() *audit.Solution {

@@ -1,0 +1,248 @@
+// Package intake is the page on which a logger's recording becomes a duty: what the file
+// seems to be and every correction of that, what is wrong with the data and what is done
+// about it, which columns make which tracks, how well the rate tells the energy, and which
+// cycle is taken.
+package intake
+
+import (
+	"fmt"
+	"path/filepath"
+	"strings"
+	"sync"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+	"barlitre/audit"
+	"barlitre/circuit/duty"
+	"barlitre/circuit/logged"
+	"barlitre/circuit/recording/logger"
+	"barlitre/machines/units"
+)
+
+// Page is the page. Its methods run on the UI goroutine.
+type Page struct {
+	Leave func() // shows the station again
+
+	ctx     station.Context
+	content fyne.CanvasObject
+	head    *header
+	tabs    []*tab
+	at      int
+	loading bool // values come from the recipe: choices are not the user's
+
+	path   string
+	file   *logger.File
+	recipe logger.Recipe
+	kept   *audit.Kept // what the recipe read, nil before
+	tracks []logged.Track
+	axes   []duty.Axis // that the audit does not have yet
+	part   logged.Part
+	again  string          // the duty that is changed, "" for a new one
+	known  map[string]bool // tracks that were suggested or added
+
+	job  job
+	work sync.Mutex // held by what works tracks out
+	out  outcome
+}
+
+// tab is one side of the page.
+type tab struct {
+	word   string
+	button *widgets.Button
+	body   fyne.CanvasObject
+	fill   func()
+	mark   func() string // behind the word; may be nil
+}
+
+// New makes the page.
+func New(ctx station.Context) *Page {
+	p := &Page{ctx: ctx}
+	p.head = newHeader(p)
+	bar, bodies := container.NewHBox(), container.NewStack()
+	add := func(word string, body fyne.CanvasObject, fill func(), mark func() string) {
+		i := len(p.tabs)
+		t := &tab{word: word, body: body, fill: fill, mark: mark}
+		t.button = widgets.Name(widgets.NewButton(word, func() { p.open(i) }), "intake.tab."+strings.ToLower(word))
+		p.tabs = append(p.tabs, t)
+		bar.Add(t.button)
+		bodies.Add(body)
+	}
+	form := newForm(p)
+	add("File", form.content, form.fill, func() string { return count(len(p.recipe.Questions)) })
+	columns := newColumns(p)
+	add("Columns", columns.content, columns.fill, nil)
+	found := newFindings(p)
+	add("Findings", found.content, found.fill, func() string { return count(len(p.corrections())) })
+	tracks := newTracks(p)
+	add("Tracks", tracks.content, tracks.fill, func() string { return count(len(p.out.faults)) })
+	cycle := newCycles(p)
+	add("Cycles", cycle.content, cycle.fill, nil)
+	p.content = widgets.Spaced(container.NewBorder(container.NewVBox(p.head.content, container.NewHScroll(bar)), nil, nil, nil, bodies))
+	p.open(0)
+	return p
+}
+
+func count(n int) string {
+	if n == 0 {
+		return ""
+	}
+	return fmt.Sprintf(" (%d)", n)
+}
+
+// Content is the page.
+func (p *Page) Content() fyne.CanvasObject { return p.content }
+
+// open shows a side.
+func (p *Page) open(i int) {
+	p.at = i
+	p.refresh()
+}
+
+// refresh brings what is shown up to date.
+func (p *Page) refresh() {
+	for i, t := range p.tabs {
+		show(t.body, i == p.at)
+		text, importance := t.word, widget.MediumImportance
+		if t.mark != nil {
+			text += t.mark()
+		}
+		if i == p.at {
+			importance = widget.HighImportance
+		}
+		if t.button.Text != text || t.button.Importance != importance {
+			t.button.Text, t.button.Importance = text, importance
+			t.button.Refresh()
+		}
+	}
+	p.head.fill()
+	if p.file != nil {
+		p.loading = true
+		p.tabs[p.at].fill()
+		p.loading = false
+	}
+}
+
+// Changed follows a change of theme, units or the audit.
+func (p *Page) Changed(station.What) { p.refresh() }
+
+// Open begins with a recording; it says why it cannot.
+func (p *Page) Open(path string) error {
+	file, err := logger.Open(path)
+	if err != nil {
+		return err
+	}
+	p.begin(path, file)
+	p.recipe = file.Guess()
+	p.head.name.SetValue(p.freeName(path), "")
+	p.at = 0
+	if len(p.recipe.Questions) == 0 {
+		p.at = 3 // what comes of it; the other sides tell how
+	}
+	p.read()
+	return nil
+}
+
+// Reopen begins with a duty that was made here: its recording is read anew if it changed.
+func (p *Page) Reopen(i int) error {
+	f := p.ctx.Doc().File()
+	im := f.Imports[i]
+	path := filepath.Join(filepath.Dir(p.ctx.Doc().Path()), filepath.FromSlash(im.File))
+	file, err := logger.Open(path)
+	if err != nil {
+		return fmt.Errorf("%s cannot be opened: %w; put it back beside the audit file", im.File, plain(err))
+	}
+	p.begin(path, file)
+	p.recipe, p.again, p.part, p.tracks = im.Recipe, f.Duties[i].Name, im.Part, im.TracksOf()
+	p.head.name.SetValue(p.again, "")
+	p.at = 3
+	p.read()
+	return nil
+}
+
+func (p *Page) begin(path string, file *logger.File) {
+	p.job.cancel()
+	p.path, p.file, p.kept = path, file, nil
+	p.tracks, p.axes, p.part, p.again, p.known, p.out = nil, nil, logged.Part{}, "", map[string]bool{}, outcome{}
+}
+
+// freeName is the name of the file, or with a number behind it where a duty has it.
+func (p *Page) freeName(path string) string {
+	base := strings.TrimSuffix(filepath.Base(path), filepath.Ext(path))
+	name := base
+	for n := 2; p.dutyNamed(name) >= 0; n++ {
+		name = fmt.Sprintf("%s %d", base, n)
+	}
+	return name
+}
+
+func (p *Page) dutyNamed(name string) int {
+	for i, d := range p.ctx.Doc().File().Duties {
+		if d.Name == name {
+			return i
+		}
+	}
+	return -1
+}
+
+// close leaves the page; nothing is changed.
+func (p *Page) close() {
+	p.job.cancel()
+	p.file, p.kept, p.out = nil, nil, outcome{}
+	p.Leave()
+}
+
+// kind tells the kind of an axis, of the audit or new.
+func (p *Page) kind(of string) (duty.AxisKind, bool) {
+	for _, a := range p.allAxes() {
+		if a.Name == of {
+			return a.Kind, true
+		}
+	}
+	return duty.Linear, false
+}
+
+func (p *Page) allAxes() []duty.Axis {
+	return append(append([]duty.Axis{}, p.ctx.Doc().File().Axes...), p.axes...)
+}
+
+func (p *Page) corrections() []logger.Correction {
+	if p.kept == nil {
+		return nil
+	}
+	return p.kept.Recording().Corrections
+}
+
+func (p *Page) seconds(t float64) string { return p.ctx.Text(t, units.Time, 4) }
+
+// brief is a time without zeros at its end.
+func (p *Page) brief(t float64) string {
+	u := units.Preferred(units.Time, p.ctx.System())
+	return p.ctx.Local(station.TrimZeros(units.Number(u.FromSI(t), 4))) + "\u202f" + u.Label()
+}
+
+func show(o fyne.CanvasObject, on bool) {
+	switch {
+	case on && !o.Visible():
+		o.Show()
+	case !on && o.Visible():
+		o.Hide()
+	}
+}
+
+func setText(l *widget.Label, text string) {
+	if l.Text != text {
+		l.SetText(text)
+	}
+}
+
+// say is a text over several lines.
+func say(text string, importance widget.Importance, bold bool) *widget.Label {
+	l := widget.NewLabelWithStyle(text, fyne.TextAlignLeading, fyne.TextStyle{Bold: bold})
+	l.Wrapping = fyne.TextWrapWord
+	l.Importance = importance
+	return l
+}

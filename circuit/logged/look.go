@@ -1,0 +1,74 @@
+package logged
+
+import (
+	"math"
+	"slices"
+
+	"barlitre/circuit/duty"
+	"barlitre/circuit/recording/cycles"
+	"barlitre/circuit/recording/rate"
+)
+
+// Rated is what the rate of a recording means for the energy of an axis.
+type Rated struct {
+	Axis string
+	rate.Check
+}
+
+// rateRows bounds the rows by which a rate is judged: those in the middle of a longer recording.
+const rateRows = 400_000
+
+// Rates checks each axis that has motion and load. means says that rows are means over
+// their intervals; cycle [s] is 0 where none is known.
+func Rates(d *duty.Duty, means bool, cycle float64) (out []Rated) {
+	from, to := 0, len(d.Time)
+	if to > rateRows {
+		from, to = to/2-rateRows/2, to/2+rateRows/2
+	}
+	for _, w := range Works(d) {
+		out = append(out, Rated{w.Axis, rate.Of(d.Time[from:to], w.Load[from:to], w.Speed[from:to], means, cycle)})
+	}
+	return out
+}
+
+// Cycles finds cycles and states: by the speeds of the axes, their loads, and the power that
+// both make.
+func Cycles(d *duty.Duty) (*cycles.Result, error) {
+	in := cycles.Input{T: d.Time}
+	for _, w := range Works(d) {
+		in.Motion = append(in.Motion, w.Speed)
+		if slices.Min(w.Load) != slices.Max(w.Load) { // a load that is the same throughout tells no cycle
+			in.Level = append(in.Level, w.Load)
+		}
+		if in.Power == nil {
+			in.Power = make([]float64, len(d.Time))
+		}
+		for i, p := range w.Power {
+			in.Power[i] += p
+		}
+	}
+	if in.Motion == nil {
+		for _, t := range d.Tracks {
+			if t.What == duty.Speed {
+				in.Motion = append(in.Motion, t.Values)
+			}
+		}
+	}
+	return cycles.Find(in, cycles.Options{})
+}
+
+// Power is what all axes do at each row [W].
+func Power(d *duty.Duty) []float64 {
+	out := make([]float64, len(d.Time))
+	for _, w := range Works(d) {
+		for i, p := range w.Power {
+			out[i] += p
+		}
+	}
+	return out
+}
+
+// PartOf is the stretch of a cycle.
+func PartOf(c cycles.Cycle, is string) Part {
+	return Part{From: math.Max(0, c.From), To: c.To, Is: is}
+}
