@@ -87,7 +87,7 @@ func (s *Station) build() {
 		fyne.TextAlignCenter, fyne.TextStyle{}), "duty.empty")
 	empty.Wrapping = fyne.TextWrapWord
 	s.empty = container.NewPadded(empty)
-	side := container.NewVScroll(s.panel.content)
+	side := container.NewVScroll(container.New(besideBar{}, s.panel.content))
 	split := container.NewHSplit(container.NewStack(s.filled, s.empty), side)
 	split.Offset = 0.7
 	s.content = widgets.Spaced(split)
