@@ -124,3 +124,28 @@ func TestAddStagedDuty(t *testing.T) {
 		t.Error(got)
 	}
 }
+
+// The way back is scaled until the axis ends where it began, in phases and in points.
+func TestCloseStrokes(t *testing.T) {
+	f := mustParse(t, staged)
+	for _, asPoints := range []bool{false, true} {
+		g := *f
+		if asPoints {
+			if err := g.StagesToPoints("cycle"); err != nil {
+				t.Fatal(err)
+			}
+		}
+		before, _, _ := StrokeDrift(g.Duties[0], "ram")
+		top := g.Duties[0].Track("ram", 0).Values[1]
+		if err := g.CloseStrokes("cycle", "ram"); err != nil {
+			t.Fatal(err)
+		}
+		drift, way, _ := StrokeDrift(g.Duties[0], "ram")
+		if math.Abs(before) < 1e-3 || math.Abs(drift) > 1e-9*way || g.Duties[0].Track("ram", 0).Values[1] != top {
+			t.Errorf("points %v: the drift was %g and is %g of %g; the way out was %g", asPoints, before, drift, way, top)
+		}
+		if err := g.CloseStrokes("cycle", "drum"); err == nil || !strings.Contains(err.Error(), "does not go back") {
+			t.Error(err)
+		}
+	}
+}
