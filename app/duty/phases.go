@@ -92,7 +92,11 @@ func (p *phases) fill() {
 	p.table.SetData(cols, len(p.texts)+1, func(r int) widgets.TableRow {
 		row := widgets.TableRow{}
 		for c := range p.columns {
-			row.Cells = append(row.Cells, p.s.ctx.Local(p.text(r, c)))
+			text := p.text(r, c)
+			if p.columns[c].key != "name" {
+				text = strings.Replace(text, "-", "−", 1)
+			}
+			row.Cells = append(row.Cells, p.s.ctx.Local(text))
 		}
 		return row
 	})
