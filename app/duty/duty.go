@@ -34,6 +34,7 @@ type Station struct {
 	notes   *fyne.Container
 	panel   *panel
 	pages   *pages
+	phases  *phases
 	ground  *canvas.Rectangle
 	loading bool
 
@@ -91,7 +92,7 @@ func (s *Station) build() {
 		fyne.TextAlignCenter, fyne.TextStyle{}), "duty.empty")
 	empty.Wrapping = fyne.TextWrapWord
 	s.empty = container.NewPadded(container.NewBorder(empty, nil, nil, nil, container.NewVBox(container.NewCenter(s.recordings.button("duty.empty.recording")))))
-	side := container.NewVScroll(s.panel.content)
+	side := container.NewVScroll(container.New(besideBar{}, s.panel.content))
 	split := container.NewHSplit(container.NewStack(s.filled, s.empty), side)
 	split.Offset = 0.7
 	s.station = widgets.Spaced(split)
@@ -220,6 +221,9 @@ func (s *Station) locked() string {
 	if src := s.recorded().File; src != "" {
 		return "read from " + src + "; change it there"
 	}
+	if s.staged() {
+		return "computed from its phases; change those, or turn them into points"
+	}
 	return ""
 }
 
@@ -257,6 +261,7 @@ func (s *Station) Help() string {
 		"With few points the plot shows them as dots: drag one, with Shift in one direction only; a double click in a lane adds one, Delete takes the last one that was touched out.\n\n" +
 		"On the right: name, hours a year and time step of the duty, and whether it repeats. Below, the axes of the machine: name one and press Enter, say what it moves, and tick what the duty gives of it. Of speed or position, load, and command exactly two are given; the balance finds the third. " +
 		"Everything here is one step of undo.\n\n" +
+		"Phases is the other way to a cycle: one row a phase with how long it lasts, the stroke or speed and the load of each axis; the tracks are computed so that strokes are met exactly. A usual duty gives invented numbers to begin with. Turn into points makes a table of it. Where strokes do not close, a button beside the note scales the way back.\n\n" +
 		"Speed above zero extends a cylinder or hoists; a load above zero resists that. A duty that was read from a CSV file is changed in that file.\n\n" +
 		"The notes tell whether the strokes close, below which speed an axis counts as standing, and what was found."
 }

@@ -137,7 +137,7 @@ func (p *panel) trackChecks(tracks []string) fyne.CanvasObject {
 			c.Disable()
 		}
 		p.checks[track] = c
-		grid.Add(c)
+		grid.Add(container.NewHBox(c)) // a box takes clicks as far as its word reaches
 	}
 	return grid
 }
@@ -168,4 +168,18 @@ func show(o fyne.CanvasObject, on bool) {
 	case !on && o.Visible():
 		o.Hide()
 	}
+}
+
+// besideBar leaves room for the scroll bar at the right.
+type besideBar struct{}
+
+func (besideBar) Layout(objects []fyne.CanvasObject, size fyne.Size) {
+	for _, o := range objects {
+		o.Move(fyne.NewPos(4, 0))
+		o.Resize(size.SubtractWidthHeight(4+10*widgets.Scale(), 0))
+	}
+}
+
+func (besideBar) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	return objects[0].MinSize().AddWidthHeight(4+10*widgets.Scale(), 0)
 }
