@@ -15,7 +15,7 @@ func TestImportOnTheCommandLine(t *testing.T) {
 	if code != exitOK {
 		t.Fatalf("exit %d: %s", code, errs)
 	}
-	for _, want := range []string{"pressure in bar", "0.100,95.8,66.42,30.5", "   146  14.900,115.0,55.37,76.1", "1 row out of order, line 53; sorted by time",
+	for _, want := range []string{"pressure in bar", "     2  0.000,85.0,65.00,16.8", "   146  14.900,115.0,55.37,76.1", "1 row out of order, line 53; sorted by time",
 		"fit for energy", "cycles", "import: {encoding: UTF-8, separator: ',', decimal: .,", "sha256: 976ca431"} {
 		if !strings.Contains(out, want) {
 			t.Errorf("no %q in\n%s", want, out)
