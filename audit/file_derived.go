@@ -47,8 +47,13 @@ func (r *reader) derived(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.N
 			"displacement", "gear", "efficiency", "volumetric", "inertia", "factor", "offset", "power", "value")
 		v := &derivation{r, of, f, rec, e.value, dim, true}
 		before := len(r.found)
-		tr := v.track()
+		key := e.key + ": " + flowText(e.value)
+		tr, done := r.from.derived[key]
+		if !done {
+			tr = v.track()
+		}
 		if len(r.found) == before && v.ok {
+			r.from.derived[key] = tr
 			r.keep(d, e.key, tr.Values)
 			says := map[string]string{}
 			for key, x := range f {

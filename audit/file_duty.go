@@ -30,6 +30,7 @@ func (r *reader) duties(n, root *yaml.Node) {
 		} else {
 			line[name] = at.Line
 		}
+		r.from = nil
 		r.file.Imports, r.file.Rates = append(r.file.Imports, nil), append(r.file.Rates, nil)
 		d, src := r.duty(name, item)
 		r.file.Duties = append(r.file.Duties, d)

@@ -194,6 +194,21 @@ func TestImportIsEdited(t *testing.T) {
 	}
 }
 
+// An edit elsewhere reads the audit file again, but imports and derives nothing anew.
+func TestEditKeepsAnImport(t *testing.T) {
+	f, dir := keptImport(t)
+	load := &f.Duties[0].Track("ram", duty.Load).Values[0]
+	if err := os.Remove(filepath.Join(dir, "press.csv")); err != nil { // it would be missed
+		t.Fatal(err)
+	}
+	if err := f.Set("As found/RV1.crack", "150 bar"); err != nil {
+		t.Fatal(err)
+	}
+	if &f.Duties[0].Track("ram", duty.Load).Values[0] != load || len(f.Rates[0]) != 1 {
+		t.Error("derived again")
+	}
+}
+
 // What is wrong with an import is told with its key.
 func TestImportsThatAreWrong(t *testing.T) {
 	f, dir := keptImport(t)

@@ -14,7 +14,9 @@ import (
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/circuit/logged"
+	"barlitre/circuit/recording/channels"
 	"barlitre/circuit/recording/logger"
+	"barlitre/circuit/recording/rate"
 	"barlitre/machines/units"
 )
 
@@ -135,6 +137,7 @@ func (r *reader) recording(s scope, at *yaml.Node, name string, recipe *yaml.Nod
 	}
 	key := name + "\x00" + string(text)
 	if t := r.file.tables[key]; t != nil {
+		r.from = t
 		return t.rec
 	}
 	if r.file.open == nil {
@@ -146,13 +149,33 @@ func (r *reader) recording(s scope, at *yaml.Node, name string, recipe *yaml.Nod
 		r.bad(s, at, "file", "%v", cannotRead(name, err))
 		return nil
 	}
-	for k, t := range r.file.tables { // of the same file by another recipe: it is not asked for again
+	r.file.forget(name)
+	t := keptRecording(rec)
+	r.file.tables[key], r.from = t, t
+	return rec
+}
+
+// keptRecording has room for what is worked out of a recording.
+func keptRecording(rec *logger.Recording) *recorded {
+	return &recorded{rec: rec, channels: map[string][]float64{}, derived: map[string]channels.Track{}, rates: map[rateOf]rate.Check{}}
+}
+
+// importsKept is how many imports of one file are kept: of duties that read it in other ways, and of one undone.
+const importsKept = 3
+
+// forget drops what was read of a file by other recipes when there is too much of it.
+func (f *File) forget(name string) {
+	var of []string
+	for k, t := range f.tables {
 		if t.rec != nil && strings.HasPrefix(k, name+"\x00") {
-			delete(r.file.tables, k)
+			of = append(of, k)
 		}
 	}
-	r.file.tables[key] = &recorded{rec: rec, channels: map[string][]float64{}}
-	return rec
+	if len(of) >= importsKept {
+		for _, k := range of {
+			delete(f.tables, k)
+		}
+	}
 }
 
 func (f *File) importFile(name string, rp logger.Recipe) (*logger.Recording, error) {
@@ -221,21 +244,9 @@ func (r *reader) channel(s scope, rec *logger.Recording, at *yaml.Node, key, col
 		r.bad(s, at, key, "%s: %q is a %s, must be a %s; say its quantity and unit in the import", rec.Name, column, was, dim.Name())
 		return nil
 	}
-	t := r.file.tableOf(rec)
-	if t == nil {
-		return c.Values()
-	}
+	t := r.from
 	if t.channels[column] == nil {
 		t.channels[column] = c.Values()
 	}
 	return t.channels[column]
-}
-
-func (f *File) tableOf(rec *logger.Recording) *recorded {
-	for _, t := range f.tables {
-		if t.rec == rec {
-			return t
-		}
-	}
-	return nil
 }

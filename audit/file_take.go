@@ -18,7 +18,7 @@ type Kept struct{ as *recorded }
 
 // Keep keeps a recording.
 func Keep(rec *logger.Recording) *Kept {
-	return &Kept{&recorded{rec: rec, channels: map[string][]float64{}}}
+	return &Kept{keptRecording(rec)}
 }
 
 // KeptOf returns the recording that a duty was imported from, nil where it was not.

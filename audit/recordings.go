@@ -19,30 +19,44 @@ type AxisRate struct {
 	rate.Check
 }
 
-// rated checks for each axis that has a speed and a load whether a recording is fast enough.
-func rated(d *duty.Duty, axes []duty.Axis, means bool) (out []AxisRate) {
+// rateOf tells checks apart: the columns they are of, and what else they hang on.
+type rateOf struct {
+	load, speed *float64
+	cycle       float64
+	means       bool
+}
+
+// rated checks for each axis that has a speed and a load whether a recording is fast
+// enough; what was checked once is kept, for an edit reads the audit file again.
+func (t *recorded) rated(d *duty.Duty, axes []duty.Axis, means bool) (out []AxisRate) {
 	cycle := 0.0
 	if d.Repeats {
 		cycle = d.Cycle()
 	}
 	for _, a := range axes {
 		v, load := d.Track(a.Name, duty.Speed), d.Track(a.Name, duty.Load)
-		if v == nil || load == nil || len(v.Values) != len(d.Time) || len(load.Values) != len(d.Time) {
+		if v == nil || load == nil {
 			continue
 		}
-		from, to := 0, len(d.Time)
-		if to > rateRows {
-			from, to = to/2-rateRows/2, to/2+rateRows/2
+		of := rateOf{&load.Values[0], &v.Values[0], cycle, means}
+		c, done := t.rates[of]
+		if !done {
+			from, to := 0, len(d.Time)
+			if to > rateRows {
+				from, to = to/2-rateRows/2, to/2+rateRows/2
+			}
+			c = rate.Of(d.Time[from:to], load.Values[from:to], v.Values[from:to], means, cycle)
+			t.rates[of] = c
 		}
-		out = append(out, AxisRate{a.Name, rate.Of(d.Time[from:to], load.Values[from:to], v.Values[from:to], means, cycle)})
+		out = append(out, AxisRate{a.Name, c})
 	}
 	return out
 }
 
 // rate keeps and tells whether the rows of a recording tell the energy of its axes.
 func (r *reader) rate(s scope, d *duty.Duty, f map[string]entry, i int) {
-	at, recorded := f["file"]
-	if !recorded || len(d.Check()) > 0 {
+	at := f["file"]
+	if r.from == nil || len(d.Time) < rowsEnough || len(d.Check()) > 0 { // fewer rows are a few points, as if typed
 		return
 	}
 	means := false
@@ -51,10 +65,7 @@ func (r *reader) rate(s scope, d *duty.Duty, f map[string]entry, i int) {
 			means = means || c.Kind == logger.Mean
 		}
 	}
-	if len(d.Time) < rowsEnough {
-		return // a few points, as if typed
-	}
-	r.file.Rates[i] = rated(d, r.file.Axes, means)
+	r.file.Rates[i] = r.from.rated(d, r.file.Axes, means)
 	for _, a := range r.file.Rates[i] {
 		if a.Warns {
 			r.told(s, circuit.Warns, at.value, "axis "+a.Axis+": "+strings.Join(a.Remarks, "; "))
