@@ -48,7 +48,7 @@ const (
 func Laws(what duty.What, kind duty.AxisKind) (out []Law) {
 	dim := what.Dim(kind)
 	speed, position := duty.Speed.Dim(kind), duty.Position.Dim(kind)
-	moves := []Channel{{"speed", "speed, for friction and mass", speed, true}, {"position", "or position", position, true}}
+	moves := []Channel{{"speed", "for friction: speed", speed, true}, {"position", "or position", position, true}}
 	sides := []Channel{{"a", "pressure at A", units.Pressure, false}, {"b", "pressure at B", units.Pressure, true}}
 	smoothed := Number{"window", "smoothed over", units.Time, "10 rows, 0.05 s at least"}
 	none := "none"

@@ -39,6 +39,8 @@ type tracks struct {
 // trackRows are the rows of one track.
 type trackRows struct {
 	says, fault *widget.Label
+	picks       map[string]*choice        // of channels, by key
+	fields      map[string]*widgets.Field // of numbers, by key
 }
 
 func newTracks(p *Page) *tracks {
@@ -192,6 +194,12 @@ func (t *tracks) fill() {
 	}
 	for i, x := range p.tracks {
 		r := t.made[i]
+		for key, pick := range r.picks {
+			pick.set(x.Says[key])
+		}
+		for key, field := range r.fields {
+			field.SetValue(p.ctx.Local(x.Says[key]), "")
+		}
 		text := p.out.says[x.Name]
 		if x.Law == logged.AsMeasured && text == "" {
 			text = "as it was measured"
@@ -222,7 +230,7 @@ func (t *tracks) key() string {
 	p := t.p
 	s := fmt.Sprint(p.allAxes(), p.ctx.Local("0.0"))
 	for _, x := range p.tracks {
-		s += x.Name + x.Law + fmt.Sprint(x.Says)
+		s += x.Name + x.Law
 	}
 	if p.kept != nil {
 		s += p.kept.Recording().SHA256 + fmt.Sprint(p.recipe.Channels)
@@ -241,16 +249,17 @@ func (t *tracks) rebuild() {
 		if i > 0 {
 			t.list.Add(widget.NewSeparator())
 		}
-		r := &trackRows{says: widgets.Name(say("", widget.LowImportance, false), "intake.track."+x.Name+".formula"), fault: widgets.Name(say("", widget.DangerImportance, false), "intake.track."+x.Name+".fault")}
+		r := &trackRows{says: widgets.Name(say("", widget.LowImportance, false), "intake.track."+x.Name+".formula"), fault: widgets.Name(say("", widget.DangerImportance, false), "intake.track."+x.Name+".fault"),
+			picks: map[string]*choice{}, fields: map[string]*widgets.Field{}}
 		t.made = append(t.made, r)
-		t.list.Add(t.rows(x))
+		t.list.Add(t.rows(x, r))
 		t.list.Add(r.says)
 		t.list.Add(r.fault)
 	}
 	t.list.Refresh()
 }
 
-func (t *tracks) rows(x logged.Track) fyne.CanvasObject {
+func (t *tracks) rows(x logged.Track, r *trackRows) fyne.CanvasObject {
 	p, name := t.p, x.Name
 	of, what, _ := x.Split()
 	kind, _ := p.kind(of)
@@ -283,11 +292,12 @@ func (t *tracks) rows(x logged.Track) fyne.CanvasObject {
 		if len(fits) == 0 {
 			pick.PlaceHolder = "no column is a " + c.Dim.Name()
 		}
-		pick.set(x.Says[c.Key])
+		r.picks[c.Key] = pick
 		box.Add(widgets.Row(c.Name, pick.Select, nil))
 	}
 	for _, n := range l.Numbers {
-		field := widgets.Name(widgets.NewField(x.Says[n.Key], func(text string) error { return t.takeNumber(name, n, text) }), "intake.track."+name+"."+n.Key)
+		field := widgets.Name(widgets.NewField("", func(text string) error { return t.takeNumber(name, n, text) }), "intake.track."+name+"."+n.Key)
+		r.fields[n.Key] = field
 		field.SetPlaceHolder(n.Default)
 		if n.Default == "" {
 			field.SetPlaceHolder("such as " + example(n.Dim))
