@@ -11,6 +11,7 @@ import (
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
+	"barlitre/app/duty/intake"
 	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
@@ -263,5 +264,6 @@ func (s *Station) Help() string {
 		"Everything here is one step of undo.\n\n" +
 		"Phases is the other way to a cycle: one row a phase with how long it lasts, the stroke or speed and the load of each axis; the tracks are computed so that strokes are met exactly. A usual duty gives invented numbers to begin with. Turn into points makes a table of it. Where strokes do not close, a button beside the note scales the way back.\n\n" +
 		"Speed above zero extends a cylinder or hoists; a load above zero resists that. A duty that was read from a CSV file is changed in that file.\n\n" +
+		intake.Help + "\n\n" +
 		"The notes tell whether the strokes close, below which speed an axis counts as standing, and what was found."
 }

@@ -55,14 +55,13 @@ func newCycles(p *Page) *cyclesTab {
 	c.none = widgets.Name(say("", widget.MediumImportance, false), "intake.cycles.none")
 	c.states = widgets.Name(widgets.NewFigure(fyne.NewSize(260, 64), c.drawStates), "intake.states")
 	c.stack = widgets.NewPicture(fyne.NewSize(260, 120), p.ctx.Palette)
-	c.table = widgets.Name(widgets.NewTable(fyne.NewSize(260, 90), p.ctx.Palette), "intake.cycles")
+	c.table = widgets.Name(widgets.NewTable(fyne.NewSize(260, 180), p.ctx.Palette), "intake.cycles")
 	c.table.ByRow = true
 	c.table.Tapped = func(row, _ int) { c.takeRow(row) }
 	left := container.NewVBox(widgets.Card("What makes the duty", container.NewVBox(c.which.Select, c.span, c.spread)), widget.NewSeparator(),
 		widgets.Card("Is it logged fast enough?", c.rate))
-	plots := container.NewBorder(container.NewVBox(c.none, c.states), nil, nil, nil, container.NewVScroll(c.stack))
-	right := container.NewVSplit(plots, c.table)
-	right.Offset = 0.66
+	right := container.NewVScroll(container.New(besideBar{}, container.NewVBox(c.none, c.states, c.stack, c.table)))
+	c.table.Outer = right.Scrolled
 	split := container.NewHSplit(container.NewVScroll(container.New(besideBar{}, left)), right)
 	split.Offset = 0.36
 	c.content = split
@@ -199,6 +198,9 @@ func (c *cyclesTab) spreadText() string {
 	r := c.p.out.found
 	if r == nil || len(r.Cycles) == 0 {
 		return "A recorded duty is one stretch of time, and its mean is taken. Set under Duty that it repeats if it does."
+	}
+	if len(c.p.out.works) == 0 {
+		return fmt.Sprintf("%d cycles of %s on average (%s to %s), by what moves. Their energy stands here once an axis has a load too.", len(r.Cycles), c.p.seconds(r.Period), c.p.seconds(r.Length.Least), c.p.seconds(r.Length.Most))
 	}
 	kJ := func(j float64) string { return c.p.ctx.Text(j, units.Energy, 3) }
 	e := r.Energy

@@ -149,15 +149,17 @@ func (f *form) lay() fyne.CanvasObject {
 	f.rows = []fyne.CanvasObject{row("Date is", f.order), row("Unit of time", f.unit), widgets.FieldRow("Interval", f.interval),
 		widgets.FieldRow("Columns begin at", f.wide), row("and column", f.second)}
 	left := container.NewVBox(f.questions,
-		widgets.Card("Text", container.NewVBox(row("Encoding", f.encoding), row("Columns parted by", f.separator), f.rows[3], row("Decimal sign", f.decimal), row("Thousands parted by", f.group))),
+		widgets.Card("Text", container.NewVBox(row("Encoding", f.encoding), row("Columns parted by", f.separator), f.rows[3], row("Decimal sign", f.decimal), row("Thousands sign", f.group))),
 		widgets.Card("Lines, from 1", container.NewVBox(widgets.FieldRow("Names of columns", f.head), widgets.FieldRow("Units", f.unitsRow), widgets.FieldRow("First row", f.first))),
 		widgets.Card("Time stamps", container.NewVBox(row("Written as", f.shape), row("in column", f.clock), f.rows[4], f.rows[0], f.rows[1], f.rows[2])),
 		f.reasons)
-	f.raw = widgets.Name(widgets.NewTable(fyne.NewSize(260, 90), f.p.ctx.Palette), "intake.raw")
-	f.read = widgets.Name(widgets.NewTable(fyne.NewSize(260, 90), f.p.ctx.Palette), "intake.read")
+	f.raw = widgets.Name(widgets.NewTable(fyne.NewSize(260, 110), f.p.ctx.Palette), "intake.raw")
+	f.read = widgets.Name(widgets.NewTable(fyne.NewSize(260, 120), f.p.ctx.Palette), "intake.read")
 	f.raw.ByRow, f.read.ByRow = true, true
 	both := container.NewVSplit(widgets.Card("As it stands: first and last lines", f.raw), widgets.Card("As it is read, before corrections", container.NewBorder(f.wrong, nil, nil, nil, f.read)))
-	split := container.NewHSplit(container.NewVScroll(container.New(besideBar{}, left)), both)
+	room := container.NewVScroll(both)
+	f.raw.Outer, f.read.Outer = room.Scrolled, room.Scrolled
+	split := container.NewHSplit(container.NewVScroll(container.New(besideBar{}, left)), room)
 	split.Offset = 0.32
 	return split
 }

@@ -22,11 +22,13 @@ const (
 func stacked(r *found.Result, d *duty.Duty, p *Page) figures.Plot {
 	kW := units.Preferred(units.Power, p.ctx.System())
 	plot := figures.Plot{Axis: "time into the cycle", AxisUnit: "s"}
-	plot.Lanes = append(plot.Lanes, stackLane(r, logged.Power(d), "power", kW))
-	for _, w := range logged.Works(d) {
-		if len(plot.Lanes) < stackLanes {
-			kind, _ := p.kind(w.Axis)
-			plot.Lanes = append(plot.Lanes, stackLane(r, w.Speed, w.Axis+" speed", units.Preferred(duty.Speed.Dim(kind), p.ctx.System())))
+	if len(logged.Works(d)) > 0 {
+		plot.Lanes = append(plot.Lanes, stackLane(r, logged.Power(d), "power", kW))
+	}
+	for _, t := range d.Tracks {
+		if t.What == duty.Speed && len(plot.Lanes) < stackLanes {
+			kind, _ := p.kind(t.Of)
+			plot.Lanes = append(plot.Lanes, stackLane(r, t.Values, t.Of+" speed", units.Preferred(duty.Speed.Dim(kind), p.ctx.System())))
 		}
 	}
 	return plot
