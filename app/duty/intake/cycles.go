@@ -76,7 +76,7 @@ func (c *cyclesTab) take(word string) {
 		c.p.part = logged.Part{}
 	case word == typicalIs && r != nil && r.Typical >= 0:
 		c.p.part = logged.PartOf(r.Cycles[r.Typical], typicalIs)
-	case word == extremeIs && r != nil && r.Extreme >= 0:
+	case word == extremeIs && c.p.extreme() >= 0:
 		c.p.part = logged.PartOf(r.Cycles[r.Extreme], extremeIs)
 	default:
 		t := c.p.kept.Recording().Time
@@ -90,6 +90,14 @@ func (c *cyclesTab) take(word string) {
 	c.p.derive()
 }
 
+// extreme is the cycle that takes the most energy, -1 where none is known to take any.
+func (p *Page) extreme() int {
+	if r := p.out.found; r != nil && len(p.out.works) > 0 {
+		return r.Extreme
+	}
+	return -1
+}
+
 // takeRow takes the cycle of a row of the table.
 func (c *cyclesTab) takeRow(row int) {
 	r := c.p.out.found
@@ -100,7 +108,7 @@ func (c *cyclesTab) takeRow(row int) {
 	switch row {
 	case r.Typical:
 		c.p.part.Is = typicalIs
-	case r.Extreme:
+	case c.p.extreme():
 		c.p.part.Is = extremeIs
 	}
 	c.p.derive()
@@ -138,9 +146,10 @@ func (c *cyclesTab) fill() {
 		labels[0] += ", " + p.seconds(t[len(t)-1]-t[0])
 	}
 	if r != nil && r.Typical >= 0 {
-		words = append(words, typicalIs, extremeIs)
-		labels = append(labels, fmt.Sprintf("the typical cycle, number %d, %s", r.Typical+1, p.seconds(r.Cycles[r.Typical].Length())),
-			fmt.Sprintf("the extreme cycle, number %d, %s", r.Extreme+1, p.seconds(r.Cycles[r.Extreme].Length())))
+		words, labels = append(words, typicalIs), append(labels, fmt.Sprintf("the typical cycle, number %d, %s", r.Typical+1, p.seconds(r.Cycles[r.Typical].Length())))
+	}
+	if i := p.extreme(); i >= 0 {
+		words, labels = append(words, extremeIs), append(labels, fmt.Sprintf("the extreme cycle, number %d, %s", i+1, p.seconds(r.Cycles[i].Length())))
 	}
 	words, labels = append(words, stretchIs), append(labels, "a stretch from … to …")
 	for i := range labels {
@@ -270,7 +279,7 @@ func (c *cyclesTab) fillStack() {
 	case len(r.Cycles) == 0:
 		text = "No cycle that repeats was found."
 	default:
-		text = "The cycles over one another: the typical one green, the extreme one dashed, the others grey."
+		text = "The cycles over one another; a click on one below makes it the duty."
 	}
 	setText(c.none, p.ctx.Local(text))
 	c.states.Refresh()

@@ -23,18 +23,18 @@ func stacked(r *found.Result, d *duty.Duty, p *Page) figures.Plot {
 	kW := units.Preferred(units.Power, p.ctx.System())
 	plot := figures.Plot{Axis: "time into the cycle", AxisUnit: "s"}
 	if len(logged.Works(d)) > 0 {
-		plot.Lanes = append(plot.Lanes, stackLane(r, logged.Power(d), "power", kW))
+		plot.Lanes = append(plot.Lanes, stackLane(r, p.extreme(), logged.Power(d), "power", kW))
 	}
 	for _, t := range d.Tracks {
 		if t.What == duty.Speed && len(plot.Lanes) < stackLanes {
 			kind, _ := p.kind(t.Of)
-			plot.Lanes = append(plot.Lanes, stackLane(r, t.Values, t.Of+" speed", units.Preferred(duty.Speed.Dim(kind), p.ctx.System())))
+			plot.Lanes = append(plot.Lanes, stackLane(r, p.extreme(), t.Values, t.Of+" speed", units.Preferred(duty.Speed.Dim(kind), p.ctx.System())))
 		}
 	}
 	return plot
 }
 
-func stackLane(r *found.Result, channel []float64, title string, u units.Unit) figures.Lane {
+func stackLane(r *found.Result, most int, channel []float64, title string, u units.Unit) figures.Lane {
 	lane := figures.Lane{Title: title, Unit: u.Label(), Zero: true}
 	all := r.Overlay(channel, stackPoints)
 	add := func(s *figures.Series, i int) { // time goes back between two cycles, where the line breaks
@@ -46,7 +46,7 @@ func stackLane(r *found.Result, channel []float64, title string, u units.Unit) f
 	stride := (len(all) + stackCycles - 1) / stackCycles
 	others := figures.Series{Name: "others", Role: figures.RoleBar}
 	for i := 0; i < len(all); i += stride {
-		if i != r.Typical && i != r.Extreme {
+		if i != r.Typical && i != most {
 			add(&others, i)
 		}
 	}
@@ -54,8 +54,8 @@ func stackLane(r *found.Result, channel []float64, title string, u units.Unit) f
 	if add(&typical, r.Typical); len(others.X) > 0 {
 		lane.Series = append(lane.Series, others)
 	}
-	if r.Extreme != r.Typical {
-		add(&extreme, r.Extreme)
+	if most >= 0 && most != r.Typical {
+		add(&extreme, most)
 		lane.Series = append(lane.Series, extreme)
 	}
 	lane.Series = append(lane.Series, typical)
@@ -83,7 +83,7 @@ func (c *cyclesTab) fillTable() {
 			switch i {
 			case r.Typical:
 				note = "typical"
-			case r.Extreme:
+			case p.extreme():
 				note = "extreme"
 			case r.Odd:
 				note = "least like the typical one"
