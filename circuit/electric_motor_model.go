@@ -82,7 +82,7 @@ func (m *electricModel) bind(b *binding) {
 	w := b.p[m.n]
 	m.law.bind(b)
 	m.told = b.commanded(m.id, duty.Command)
-	m.electric.bind(b)
+	m.electric.bind(b, &m.law)
 	m.start.bind(b)
 	size := m.k.shafts[m.shaft].size(b.p)
 	m.wPer = b.scales.q / size

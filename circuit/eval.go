@@ -65,12 +65,12 @@ func (e *eval) plain() bool { return e.slopes == nil }
 
 // branch adds the flow unknown q from node a to node b.
 func (e *eval) branch(a, b, q slot) float64 {
-	v := e.val(q)
-	e.add(a, v)
-	e.add(b, -v)
-	if !e.plain() {
-		e.d(a, q, 1)
-		e.d(b, q, -1)
+	v, rows, known := e.val(q), e.rows, e.known
+	rows[a+known] += v
+	rows[b+known] -= v
+	if j := e.slopes; j != nil {
+		j.Add(int(a), int(q), 1)
+		j.Add(int(b), int(q), -1)
 	}
 	return v
 }
@@ -78,24 +78,26 @@ func (e *eval) branch(a, b, q slot) float64 {
 // drop adds the row of the flow unknown q between a and b: r(q) − (pa − pb),
 // where r and its slope dr are the pressure drop at q.
 func (e *eval) drop(a, b, q slot, r, dr float64) {
-	e.add(q, r+minResistance*e.val(q)-(e.val(a)-e.val(b)))
-	if !e.plain() {
-		e.d(q, q, dr+minResistance)
-		e.d(q, a, -1)
-		e.d(q, b, 1)
+	all, known := e.all, e.known
+	e.rows[q+known] += r + minResistance*all[q+known] - (all[a+known] - all[b+known])
+	if j := e.slopes; j != nil {
+		j.Add(int(q), int(q), dr+minResistance)
+		j.Add(int(q), int(a), -1)
+		j.Add(int(q), int(b), 1)
 	}
 }
 
 // conduct adds the linear flow k·(pa − pb) from a to b and returns it.
 func (e *eval) conduct(a, b slot, k float64) float64 {
-	q := k * (e.val(a) - e.val(b))
-	e.add(a, q)
-	e.add(b, -q)
-	if !e.plain() {
-		e.d(a, a, k)
-		e.d(a, b, -k)
-		e.d(b, a, -k)
-		e.d(b, b, k)
+	all, rows, known := e.all, e.rows, e.known
+	q := k * (all[a+known] - all[b+known])
+	rows[a+known] += q
+	rows[b+known] -= q
+	if j := e.slopes; j != nil {
+		j.Add(int(a), int(a), k)
+		j.Add(int(a), int(b), -k)
+		j.Add(int(b), int(a), -k)
+		j.Add(int(b), int(b), k)
 	}
 	return q
 }
@@ -180,13 +182,7 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	e := &r.ev
 	e.slopes = j
 	clear(e.rows)
-	x, g, rest, restK := e.all[e.known:], e.rows[e.known:], r.step.rest, r.step.restK
-	for _, at := range r.found {
-		n := at.slot
-		p, k := x[n], restK[n]
-		g[n] += r.leak*p + k*(p-rest[n])
-		e.d(n, n, r.leak+k)
-	}
+	r.leaks(e)
 	for i := range r.free {
 		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
 		s := &r.free[i]
@@ -195,6 +191,24 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	}
 	for _, m := range r.models {
 		m.eval(e)
+	}
+}
+
+// leaks adds what ties each node to tank, and to what a held load asks for.
+func (r *run) leaks(e *eval) {
+	x, g, leak := e.all[e.known:], e.rows[e.known:], r.leak
+	for _, at := range r.found {
+		g[at.slot] += leak * x[at.slot]
+	}
+	if j := e.slopes; j != nil {
+		for _, at := range r.found {
+			j.Add(int(at.slot), int(at.slot), leak)
+		}
+	}
+	for _, n := range r.step.resting {
+		k := r.step.restK[n]
+		g[n] += k * (x[n] - r.step.rest[n])
+		e.d(n, n, k)
 	}
 }
 
@@ -319,6 +333,7 @@ type step struct {
 	now      *eval     // that hold them and the known numbers
 	rest     []float64 // by node unknown: reference pressure of the leak
 	restK    []float64 // and its conductance
+	resting  []slot    // nodes that have one
 	pScale   float64
 }
 
@@ -337,6 +352,9 @@ type axisStep struct {
 // restAt gives a node that nothing else determines a place to rest [Pa].
 func (s *step) restAt(node slot, pressure float64) {
 	if node >= 0 {
+		if s.restK[node] == 0 {
+			s.resting = append(s.resting, node)
+		}
 		s.rest[node], s.restK[node] = pressure/s.pScale, restLeak
 	}
 }

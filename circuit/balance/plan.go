@@ -15,8 +15,10 @@ import (
 type plan struct {
 	key     []uint64 // which unknowns rest on a bound
 	entries int      // of the slopes it was made for
+	none    []int32  // entries that were zero when it was made, and count on being so
 	sparse  bool     // false: singular when it was made, use the dense factors
 	bad     int      // times a pivot was too small
+	next    *plan    // another one of the same key
 	fixed   []int32  // the unknowns that rest on a bound
 	least   []float64
 	pivots  []counted // place of a pivot, number of rows below it
@@ -87,10 +89,11 @@ func each(set []uint64, f func(i int)) {
 	}
 }
 
-// make works out a plan for the slopes j as they are now.
-func (w *planner) make(j *Slopes, key []uint64) *plan {
+// make works out a plan for the slopes j as they are now; with lean set it leaves out
+// entries that are zero, and holds while they are.
+func (w *planner) make(j *Slopes, key []uint64, lean bool) *plan {
 	p := &plan{key: append([]uint64(nil), key...), entries: len(j.val)}
-	w.load(j, p)
+	w.load(j, p, lean)
 	n := len(w.rows)
 	p.least, p.pivots, p.below = make([]float64, 0, n), make([]counted, 0, n), make([]counted, 0, 2*n)
 	p.updates, p.forward, p.right = make([]pair, 0, 2*n), make([]triple, 0, 2*n), make([]pair, 0, 2*n)
@@ -108,7 +111,7 @@ func (w *planner) make(j *Slopes, key []uint64) *plan {
 }
 
 // load lays the rows that are not on a bound out in w.
-func (w *planner) load(j *Slopes, p *plan) {
+func (w *planner) load(j *Slopes, p *plan, lean bool) {
 	w.rows, w.cols = w.rows[:0], w.cols[:0]
 	for i := 0; i < w.n; i++ {
 		w.scale[i] = 0
@@ -124,6 +127,8 @@ func (w *planner) load(j *Slopes, p *plan) {
 		r, c := int(j.row[k]), int(j.col[k])
 		switch {
 		case bit(p.key, r):
+		case lean && j.val[k] == 0:
+			p.none = append(p.none, int32(k))
 		case bit(p.key, c):
 			p.tied = append(p.tied, triple{int32(r), int32(k), int32(c)})
 		default:

@@ -17,8 +17,9 @@ func TestPlanAgainstLibrary(t *testing.T) {
 		n := 1 + r.IntN(90)
 		j, key := newSlopes(n), make([]uint64, (n+63)/64)
 		add := func(i, k int) {
-			j.Add(i, k, 0)
-			j.place((i+j.known)*j.side + k + j.known)
+			if at := i*j.side + k + j.zero; j.at[at] == noPlace {
+				j.place(at)
+			}
 		}
 		for i := range n {
 			add(i, i)
@@ -35,7 +36,7 @@ func TestPlanAgainstLibrary(t *testing.T) {
 			}
 		}
 		draw()
-		p := newPlanner(n).make(j, key)
+		p := newPlanner(n).make(j, key, true)
 		if !p.sparse {
 			continue
 		}

@@ -5,6 +5,7 @@ type plans struct {
 	key   []uint64 // of the last residual
 	last  *plan
 	of    map[uint64]*plan
+	count int
 	work  []float64
 	maker *planner
 }
@@ -16,7 +17,10 @@ func newPlans(n int) plans {
 	return plans{key: make([]uint64, (n+63)/64), of: map[uint64]*plan{}}
 }
 
-// get returns the plan for the present key, or nil where there is none.
+// mostVariants bounds the plans of one set of active bounds; beyond it one counts on no zeros.
+const mostVariants = 8
+
+// get returns a plan for the present key and slopes, or nil where there is no room for one.
 func (ps *plans) get(j *Slopes) *plan {
 	if p := ps.last; p != nil && p.fits(ps.key, j) {
 		return p
@@ -26,23 +30,28 @@ func (ps *plans) get(j *Slopes) *plan {
 		h = (h ^ w) * 1099511628211
 		h ^= h >> 29
 	}
-	p := ps.of[h]
-	if p == nil || !p.fits(ps.key, j) {
-		if p == nil && len(ps.of) >= mostPlans {
-			return nil
+	variants := 0
+	for p := ps.of[h]; p != nil; p = p.next {
+		if p.fits(ps.key, j) {
+			ps.last = p
+			return p
 		}
-		if p == nil || !p.met(ps.key) { // many are met but once: a plan is for those that come back
-			ps.of[h] = &plan{key: append([]uint64(nil), ps.key...)}
-			return nil
-		}
-		if ps.maker == nil {
-			ps.maker = newPlanner(j.n)
-		}
-		p = ps.maker.make(j, ps.key)
-		ps.of[h] = p
-		if len(ps.work) < p.size {
-			ps.work = make([]float64, p.size)
-		}
+		variants++
+	}
+	if ps.count >= mostPlans {
+		return nil
+	}
+	if ps.maker == nil {
+		ps.maker = newPlanner(j.n)
+	}
+	p := ps.maker.make(j, ps.key, variants < mostVariants)
+	if variants < mostVariants {
+		p.next = ps.of[h]
+	}
+	ps.of[h] = p
+	ps.count++
+	if len(ps.work) < p.size {
+		ps.work = make([]float64, p.size)
 	}
 	ps.last = p
 	return p
@@ -50,7 +59,15 @@ func (ps *plans) get(j *Slopes) *plan {
 
 // fits reports whether p was made for this key and pattern, and works.
 func (p *plan) fits(key []uint64, j *Slopes) bool {
-	return p.entries == len(j.val) && p.bad <= pivotBad && p.met(key)
+	if p.entries != len(j.val) || p.bad > pivotBad || !p.met(key) {
+		return false
+	}
+	for _, k := range p.none {
+		if j.val[k] != 0 {
+			return false
+		}
+	}
+	return true
 }
 
 // met reports whether p is of this key.
