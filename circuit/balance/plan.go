@@ -3,7 +3,6 @@ package balance
 import (
 	"math"
 	"math/bits"
-	"slices"
 )
 
 // plan is an elimination worked out once for one set of active bounds and then
@@ -21,22 +20,16 @@ type plan struct {
 	next    *plan    // another one of the same key
 	fixed   []int32  // the unknowns that rest on a bound
 	least   []float64
-	pivots  []counted // place of a pivot, number of rows below it
-	below   []counted // rows below, pivot by pivot: place in the pivot's column, number of updates
-	updates []pair    // row by row: place, place in the pivot's row whose share it loses
-	forward []triple  // place, row from, row to
-	back    []solved  // last pivot first
-	right   []pair    // of each of these: place, column
-	tied    []triple  // row, entry, column by which known steps enter the other rows
-	size    int       // of work: the entries of the slopes, then the fill
+	pivots  []pair   // pivot by pivot: its place, and how many rows below; of each of these its place in the pivot's column, and how many updates; of each of these the place, and that in the pivot's row whose share it loses
+	forward []pair   // pivot by pivot: its row, and how many rows below; of each of these its place and row
+	back    []pair   // last pivot first: row and column; its place, and how many other columns; of each of these place and column
+	tied    []triple // row, entry, column by which known steps enter the other rows; all these are places in work
+	size    int      // of work: residuals, steps, the entries of the slopes, then the fill
 }
 
 type (
-	counted struct{ place, count int32 }
-	pair    struct{ a, b int32 }
-	triple  struct{ a, b, c int32 }
-	// solved is an unknown whose step is found from those of count others.
-	solved struct{ row, col, pivot, count int32 }
+	pair   struct{ a, b int32 }
+	triple struct{ a, b, c int32 }
 )
 
 const (
@@ -55,6 +48,8 @@ type planner struct {
 	scale    []float64
 	rows     []int // left to do
 	cols     []int
+	right    []pair // back of the plan, first pivot first
+	ends     []int  // of each pivot's part of it
 }
 
 func newPlanner(n int) *planner {
@@ -95,9 +90,8 @@ func (w *planner) make(j *Slopes, key []uint64, lean bool) *plan {
 	p := &plan{key: append([]uint64(nil), key...), entries: len(j.val)}
 	w.load(j, p, lean)
 	n := len(w.rows)
-	p.least, p.pivots, p.below = make([]float64, 0, n), make([]counted, 0, n), make([]counted, 0, 2*n)
-	p.updates, p.forward, p.right = make([]pair, 0, 2*n), make([]triple, 0, 2*n), make([]pair, 0, 2*n)
-	p.back = make([]solved, 0, n)
+	p.least, p.pivots, p.forward = make([]float64, 0, n), make([]pair, 0, 4*n), make([]pair, 0, 3*n)
+	w.ends, w.right = w.ends[:0], w.right[:0]
 	for len(w.rows) > 0 {
 		r, c := w.choose()
 		if r < 0 {
@@ -130,21 +124,24 @@ func (w *planner) load(j *Slopes, p *plan, lean bool) {
 		case lean && j.val[k] == 0:
 			p.none = append(p.none, int32(k))
 		case bit(p.key, c):
-			p.tied = append(p.tied, triple{int32(r), int32(k), int32(c)})
+			p.tied = append(p.tied, triple{int32(r), int32(k), w.step(c)})
 		default:
-			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(k), j.val[k]
+			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(2*w.n+k), j.val[k]
 			put(w.inRow[r], c)
 			put(w.inCol[c], r)
 			w.scale[r] = max(w.scale[r], math.Abs(j.val[k]))
 		}
 	}
-	p.size = len(j.val)
+	p.size = 2*w.n + len(j.val)
 	for _, r := range w.rows {
 		if w.scale[r] > 0 {
 			w.scale[r] = 1 / w.scale[r]
 		}
 	}
 }
+
+// step is the place in work of the step of an unknown.
+func (w *planner) step(c int) int32 { return int32(w.n + c) }
 
 // choose finds the next pivot: a lone entry of its row or column, which costs
 // nothing, else the one with the least fill, and of these the largest.
@@ -207,18 +204,21 @@ func (w *planner) eliminate(p *plan, r, c int) {
 	drop(w.inRow[r], c)
 	piv := w.slot[r*n+c]
 	p.least = append(p.least, pivotLeast*math.Abs(w.a[r*n+c]))
-	p.pivots = append(p.pivots, counted{piv, int32(size(w.inCol[c]))})
-	p.back = append(p.back, solved{int32(r), int32(c), piv, int32(size(w.inRow[r]))})
-	from := len(p.right)
-	each(w.inRow[r], func(k int) { p.right = append(p.right, pair{w.slot[r*n+k], int32(k)}) })
-	right := p.right[from:]
+	below := int32(size(w.inCol[c]))
+	p.pivots = append(p.pivots, pair{piv, below})
+	p.forward = append(p.forward, pair{int32(r), below})
+	w.right = append(w.right, pair{int32(r), w.step(c)}, pair{piv, int32(size(w.inRow[r]))})
+	from := len(w.right)
+	each(w.inRow[r], func(k int) { w.right = append(w.right, pair{w.slot[r*n+k], w.step(k)}) })
+	w.ends = append(w.ends, len(w.right))
+	right := w.right[from:]
 	each(w.inCol[c], func(i int) {
 		l := w.slot[i*n+c]
-		p.forward = append(p.forward, triple{l, int32(r), int32(i)})
-		p.below = append(p.below, counted{l, int32(len(right))})
+		p.forward = append(p.forward, pair{l, int32(i)})
+		p.pivots = append(p.pivots, pair{l, int32(len(right))})
 		m := w.a[i*n+c] / w.a[r*n+c]
 		for _, u := range right {
-			k := int(u.b)
+			k := int(u.b) - n
 			if !bit(w.inRow[i], k) {
 				w.slot[i*n+k], w.a[i*n+k] = int32(p.size), 0
 				p.size++
@@ -226,21 +226,21 @@ func (w *planner) eliminate(p *plan, r, c int) {
 				put(w.inCol[k], i)
 			}
 			w.a[i*n+k] -= m * w.a[r*n+k]
-			p.updates = append(p.updates, pair{w.slot[i*n+k], u.a})
+			p.pivots = append(p.pivots, pair{w.slot[i*n+k], u.a})
 		}
 	})
 }
 
 // turn puts the unknowns into the order in which they are found: last pivot first.
 func (w *planner) turn(p *plan) {
-	slices.Reverse(p.back)
-	right := make([]pair, 0, len(p.right))
-	end := len(p.right)
-	for _, u := range p.back {
-		right = append(right, p.right[end-int(u.count):end]...)
-		end -= int(u.count)
+	p.back = make([]pair, 0, len(w.right))
+	for k := len(w.ends) - 1; k >= 0; k-- {
+		from := 0
+		if k > 0 {
+			from = w.ends[k-1]
+		}
+		p.back = append(p.back, w.right[from:w.ends[k]]...)
 	}
-	p.right = right
 }
 
 func without(s []int, v int) []int {
@@ -253,48 +253,62 @@ func without(s []int, v int) []int {
 }
 
 // run factors the slopes into work. It reports false when a pivot has become too small.
-func (p *plan) run(val, work []float64) bool {
+func (p *plan) run(n int, val, work []float64) bool {
 	work = work[:p.size]
-	clear(work[copy(work, val):])
-	below, updates, least := p.below, p.updates, p.least
-	for k, at := range p.pivots {
-		v := work[at.place]
-		if l := least[k]; !(v >= l || v <= -l) {
+	entries := work[2*n:]
+	clear(entries[copy(entries, val):])
+	code, at := p.pivots, 0
+	for _, least := range p.least {
+		pivot := code[at]
+		at++
+		v := work[pivot.a]
+		if !(v >= least || v <= -least) {
 			return false
 		}
 		v = 1 / v
-		work[at.place] = v
-		for _, row := range below[:at.count] {
-			m := work[row.place] * v
-			work[row.place] = m
-			for _, u := range updates[:row.count] {
+		work[pivot.a] = v
+		for below := pivot.b; below > 0; below-- {
+			row := code[at]
+			at++
+			m := work[row.a] * v
+			work[row.a] = m
+			for updates := row.b; updates > 0; updates-- {
+				u := code[at]
+				at++
 				work[u.a] -= m * work[u.b]
 			}
-			updates = updates[row.count:]
 		}
-		below = below[at.count:]
 	}
 	return true
 }
 
-// solve turns the residual b into the step dx; the steps of unknowns on a bound
-// are there already, and with moved set they enter the other rows.
-func (p *plan) solve(val, work, b, dx []float64, moved bool) {
+// solve turns the residual at the start of work into the step behind it; the steps of
+// unknowns on a bound are there already, and with moved set they enter the other rows.
+func (p *plan) solve(val, work []float64, moved bool) {
 	if moved {
 		for _, t := range p.tied {
-			b[t.a] += val[t.b] * dx[t.c]
+			work[t.a] += val[t.b] * work[t.c]
 		}
 	}
-	for _, u := range p.forward {
-		b[u.c] -= work[u.a] * b[u.b]
-	}
-	right := p.right
-	for _, u := range p.back {
-		sum := -b[u.row]
-		for _, e := range right[:u.count] {
-			sum -= work[e.a] * dx[e.b]
+	for code, at := p.forward, 0; at < len(code); {
+		pivot := code[at]
+		at++
+		v := work[pivot.a]
+		for below := pivot.b; below > 0; below-- {
+			row := code[at]
+			at++
+			work[row.b] -= work[row.a] * v
 		}
-		right = right[u.count:]
-		dx[u.col] = sum * work[u.pivot]
+	}
+	for code, at := p.back, 0; at+1 < len(code); {
+		to, pivot := code[at], code[at+1]
+		at += 2
+		sum := -work[to.a]
+		for others := pivot.b; others > 0; others-- {
+			e := code[at]
+			at++
+			sum -= work[e.a] * work[e.b]
+		}
+		work[to.b] = sum * work[pivot.a]
 	}
 }

@@ -51,7 +51,7 @@ func (ps *plans) get(j *Slopes) *plan {
 	ps.of[h] = p
 	ps.count++
 	if len(ps.work) < p.size {
-		ps.work = make([]float64, p.size)
+		ps.work = make([]float64, 2*p.size)
 	}
 	ps.last = p
 	return p
@@ -89,11 +89,16 @@ func (s *Solver) planned(a aim) bool {
 	if p == nil || !p.sparse {
 		return false
 	}
-	if !p.run(s.j.val, s.plans.work) {
+	if !p.run(s.n, s.j.val, s.plans.work) {
 		p.bad++
 		return false
 	}
 	s.step()
+	return s.usable()
+}
+
+// usable reports whether all of the step s.dx are numbers, and notes in s.far whether one is long.
+func (s *Solver) usable() bool {
 	s.far = false
 	for _, d := range s.dx {
 		if !(d*d <= maxStep*maxStep) {
@@ -108,13 +113,14 @@ func (s *Solver) planned(a aim) bool {
 
 // step solves with the factors of the last plan for the present residual.
 func (s *Solver) step() {
-	p := s.plans.last
+	p, work := s.plans.last, s.plans.work
+	s.dx = work[s.n : 2*s.n]
+	copy(work, s.r)
 	moved := false
-	copy(s.xt, s.r) // free between steps
 	for _, i := range p.fixed {
 		r := s.r[i]
 		s.dx[i] = -r / s.Weight[i]
 		moved = moved || r != 0
 	}
-	p.solve(s.j.val, s.plans.work, s.xt, s.dx, moved)
+	p.solve(s.j.val, work, moved)
 }
