@@ -105,6 +105,7 @@ func (e *eval) conduct(a, b slot, k float64) float64 {
 // hot is what every step of a run needs, sorted out once.
 type hot struct {
 	found      []foundNode
+	leaking    []int32 // these, as places in the vectors of eval
 	free       []shaft
 	gears      []*gearboxModel
 	onShafts   []shaftBooker
@@ -149,6 +150,7 @@ func (r *run) sort() {
 	for i, n := range r.nodes {
 		if n.slot >= 0 && !n.pilot {
 			r.found = append(r.found, foundNode{i, n.slot})
+			r.leaking = append(r.leaking, int32(n.slot+r.ev.known))
 		}
 	}
 	for _, s := range r.shafts {
@@ -194,11 +196,12 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	}
 }
 
-// leaks adds what ties each node to tank, and to what a held load asks for.
+// leaks sets the rows of nodes to what ties them to tank, and adds what ties them to
+// what a held load asks for.
 func (r *run) leaks(e *eval) {
-	x, g, leak := e.all[e.known:], e.rows[e.known:], r.leak
-	for _, at := range r.found {
-		g[at.slot] += leak * x[at.slot]
+	rows, all, leak := e.rows, e.all, r.leak
+	for _, i := range r.leaking {
+		rows[i] = leak * all[i]
 	}
 	if j := e.slopes; j != nil {
 		for _, at := range r.found {
@@ -207,7 +210,7 @@ func (r *run) leaks(e *eval) {
 	}
 	for _, n := range r.step.resting {
 		k := r.step.restK[n]
-		g[n] += k * (x[n] - r.step.rest[n])
+		e.add(n, k*(e.val(n)-r.step.rest[n]))
 		e.d(n, n, k)
 	}
 }

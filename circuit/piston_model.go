@@ -248,8 +248,10 @@ func (m *pistonModel) eval(e *eval) {
 	}
 	// σ sits at 1 while v > 0, at −1 while v < 0, and anywhere between at v = 0.
 	e.add(m.sigma, -v*m.steep+sg*m.rests)
-	e.d(m.sigma, m.v, -m.steep)
-	e.d(m.sigma, m.sigma, m.rests)
+	if !e.plain() {
+		e.d(m.sigma, m.v, -m.steep)
+		e.d(m.sigma, m.sigma, m.rests)
+	}
 }
 
 func (m *pistonModel) book(k *booking) {

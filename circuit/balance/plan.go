@@ -35,6 +35,7 @@ type (
 const (
 	pivotShare = 0.1  // of its column that a pivot must have when a plan is made
 	pivotLeast = 1e-5 // of its first value that it must keep
+	surePivot  = 0.1  // of its first value, from which on a pivot is as good as a new one
 	pivotBad   = 5    // a plan that failed so often is made anew
 )
 
@@ -45,6 +46,8 @@ type planner struct {
 	slot     []int32   // n×n places in work, where the bits say there is one
 	inRow    [][]uint64
 	inCol    [][]uint64
+	perRow   []int // entries left in each row
+	perCol   []int
 	scale    []float64
 	rows     []int // left to do
 	cols     []int
@@ -53,7 +56,7 @@ type planner struct {
 }
 
 func newPlanner(n int) *planner {
-	w := &planner{n: n, words: (n + 63) / 64, a: make([]float64, n*n), slot: make([]int32, n*n), scale: make([]float64, n)}
+	w := &planner{n: n, words: (n + 63) / 64, a: make([]float64, n*n), slot: make([]int32, n*n), scale: make([]float64, n), perRow: make([]int, n), perCol: make([]int, n)}
 	sets := make([]uint64, 2*n*w.words)
 	for i := 0; i < n; i++ {
 		k := 2 * i * w.words
@@ -68,11 +71,14 @@ func put(set []uint64, i int) { set[i>>6] |= 1 << (uint(i) & 63) }
 
 func drop(set []uint64, i int) { set[i>>6] &^= 1 << (uint(i) & 63) }
 
-func size(set []uint64) (n int) {
-	for _, w := range set {
-		n += bits.OnesCount64(w)
+// first is the first member of a set that is not empty.
+func first(set []uint64) int {
+	for k, w := range set {
+		if w != 0 {
+			return k<<6 + bits.TrailingZeros64(w)
+		}
 	}
-	return n
+	return -1
 }
 
 // each calls f for the members of a set, in order.
@@ -108,7 +114,7 @@ func (w *planner) make(j *Slopes, key []uint64, lean bool) *plan {
 func (w *planner) load(j *Slopes, p *plan, lean bool) {
 	w.rows, w.cols = w.rows[:0], w.cols[:0]
 	for i := 0; i < w.n; i++ {
-		w.scale[i] = 0
+		w.scale[i], w.perRow[i], w.perCol[i] = 0, 0, 0
 		clear(w.inRow[i])
 		clear(w.inCol[i])
 		if !bit(p.key, i) {
@@ -127,8 +133,7 @@ func (w *planner) load(j *Slopes, p *plan, lean bool) {
 			p.tied = append(p.tied, triple{int32(r), int32(k), w.step(c)})
 		default:
 			w.slot[r*w.n+c], w.a[r*w.n+c] = int32(2*w.n+k), j.val[k]
-			put(w.inRow[r], c)
-			put(w.inCol[c], r)
+			w.put(r, c)
 			w.scale[r] = max(w.scale[r], math.Abs(j.val[k]))
 		}
 	}
@@ -140,29 +145,31 @@ func (w *planner) load(j *Slopes, p *plan, lean bool) {
 	}
 }
 
+// put notes an entry at row r, column c.
+func (w *planner) put(r, c int) {
+	put(w.inRow[r], c)
+	put(w.inCol[c], r)
+	w.perRow[r]++
+	w.perCol[c]++
+}
+
 // step is the place in work of the step of an unknown.
 func (w *planner) step(c int) int32 { return int32(w.n + c) }
 
 // choose finds the next pivot: a lone entry of its row or column, which costs
 // nothing, else the one with the least fill, and of these the largest.
 func (w *planner) choose() (r, c int) {
-	r, c = -1, -1
-	lone := func(i, k int) {
-		if math.Abs(w.a[i*w.n+k])*w.scale[i] >= tinyPivot {
-			r, c = i, k
-		}
-	}
 	for _, i := range w.rows {
-		if size(w.inRow[i]) == 1 {
-			if each(w.inRow[i], func(k int) { lone(i, k) }); r >= 0 {
-				return r, c
+		if w.perRow[i] == 1 {
+			if k := first(w.inRow[i]); math.Abs(w.a[i*w.n+k])*w.scale[i] >= tinyPivot {
+				return i, k
 			}
 		}
 	}
 	for _, k := range w.cols {
-		if size(w.inCol[k]) == 1 {
-			if each(w.inCol[k], func(i int) { lone(i, k) }); r >= 0 {
-				return r, c
+		if w.perCol[k] == 1 {
+			if i := first(w.inCol[k]); math.Abs(w.a[i*w.n+k])*w.scale[i] >= tinyPivot {
+				return i, k
 			}
 		}
 	}
@@ -173,7 +180,7 @@ func (w *planner) cheapest() (r, c int) {
 	r, c = -1, -1
 	best, most := math.MaxInt, 0.0
 	for _, k := range w.cols {
-		others := size(w.inCol[k]) - 1
+		others := w.perCol[k] - 1
 		if others > best { // no row here has a single entry
 			continue
 		}
@@ -187,7 +194,7 @@ func (w *planner) cheapest() (r, c int) {
 			if !(v >= pivotShare*top) {
 				return
 			}
-			if cost := (size(w.inRow[i]) - 1) * others; cost < best || (cost == best && v > most) {
+			if cost := (w.perRow[i] - 1) * others; cost < best || (cost == best && v > most) {
 				best, most, r, c = cost, v, i, k
 			}
 		})
@@ -199,15 +206,15 @@ func (w *planner) cheapest() (r, c int) {
 func (w *planner) eliminate(p *plan, r, c int) {
 	n := w.n
 	w.rows, w.cols = without(w.rows, r), without(w.cols, c)
-	each(w.inRow[r], func(k int) { drop(w.inCol[k], r) })
-	each(w.inCol[c], func(i int) { drop(w.inRow[i], c) })
+	each(w.inRow[r], func(k int) { drop(w.inCol[k], r); w.perCol[k]-- })
+	each(w.inCol[c], func(i int) { drop(w.inRow[i], c); w.perRow[i]-- })
 	drop(w.inRow[r], c)
 	piv := w.slot[r*n+c]
 	p.least = append(p.least, pivotLeast*math.Abs(w.a[r*n+c]))
-	below := int32(size(w.inCol[c]))
+	below := int32(w.perCol[c])
 	p.pivots = append(p.pivots, pair{piv, below})
 	p.forward = append(p.forward, pair{int32(r), below})
-	w.right = append(w.right, pair{int32(r), w.step(c)}, pair{piv, int32(size(w.inRow[r]))})
+	w.right = append(w.right, pair{int32(r), w.step(c)}, pair{piv, int32(w.perRow[r] - 1)})
 	from := len(w.right)
 	each(w.inRow[r], func(k int) { w.right = append(w.right, pair{w.slot[r*n+k], w.step(k)}) })
 	w.ends = append(w.ends, len(w.right))
@@ -222,8 +229,7 @@ func (w *planner) eliminate(p *plan, r, c int) {
 			if !bit(w.inRow[i], k) {
 				w.slot[i*n+k], w.a[i*n+k] = int32(p.size), 0
 				p.size++
-				put(w.inRow[i], k)
-				put(w.inCol[k], i)
+				w.put(i, k)
 			}
 			w.a[i*n+k] -= m * w.a[r*n+k]
 			p.pivots = append(p.pivots, pair{w.slot[i*n+k], u.a})
@@ -277,6 +283,22 @@ func (p *plan) run(n int, val, work []float64) bool {
 				at++
 				work[u.a] -= m * work[u.b]
 			}
+		}
+	}
+	return true
+}
+
+// sure reports whether the pivots of the last run are hardly less than when the plan was
+// made: then other factors would give the same step.
+func (p *plan) sure(work []float64) bool {
+	code, at := p.pivots, 0
+	for _, least := range p.least {
+		pivot := code[at]
+		if v := work[pivot.a]; !(math.Abs(v)*least < pivotLeast/surePivot) { // v is one over the pivot
+			return false
+		}
+		for at++; pivot.b > 0; pivot.b-- {
+			at += 1 + int(code[at].b)
 		}
 	}
 	return true
