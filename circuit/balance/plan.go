@@ -90,24 +90,22 @@ func each(set []uint64, f func(i int)) {
 	}
 }
 
-// make works out a plan for the slopes j as they are now; with lean set it leaves out
+// make works out the plan p for the slopes j as they are now; with lean set it leaves out
 // entries that are zero, and holds while they are.
-func (w *planner) make(j *Slopes, key []uint64, lean bool) *plan {
-	p := &plan{key: append([]uint64(nil), key...), entries: len(j.val)}
+func (w *planner) make(p *plan, j *Slopes, key []uint64, lean bool) {
+	*p = plan{key: append(p.key[:0], key...), entries: len(j.val), none: p.none[:0], fixed: p.fixed[:0], least: p.least[:0],
+		pivots: p.pivots[:0], forward: p.forward[:0], back: p.back[:0], tied: p.tied[:0]}
 	w.load(j, p, lean)
-	n := len(w.rows)
-	p.least, p.pivots, p.forward = make([]float64, 0, n), make([]pair, 0, 4*n), make([]pair, 0, 3*n)
 	w.ends, w.right = w.ends[:0], w.right[:0]
 	for len(w.rows) > 0 {
 		r, c := w.choose()
 		if r < 0 {
-			return p
+			return
 		}
 		w.eliminate(p, r, c)
 	}
 	p.sparse = true
 	w.turn(p)
-	return p
 }
 
 // load lays the rows that are not on a bound out in w.
@@ -239,7 +237,6 @@ func (w *planner) eliminate(p *plan, r, c int) {
 
 // turn puts the unknowns into the order in which they are found: last pivot first.
 func (w *planner) turn(p *plan) {
-	p.back = make([]pair, 0, len(w.right))
 	for k := len(w.ends) - 1; k >= 0; k-- {
 		from := 0
 		if k > 0 {

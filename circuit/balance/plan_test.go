@@ -36,7 +36,8 @@ func TestPlanAgainstLibrary(t *testing.T) {
 			}
 		}
 		draw()
-		p := newPlanner(n).make(j, key, true)
+		var p plan
+		newPlanner(n).make(&p, j, key, true)
 		if !p.sparse {
 			continue
 		}

@@ -5,12 +5,13 @@ type plans struct {
 	key   []uint64 // of the last residual
 	last  *plan
 	of    map[uint64]*plan
-	count int
+	made  []*plan // that may be used again
+	count int     // of them in use
 	work  []float64
 	maker *planner
 }
 
-// mostPlans bounds the memory of plans; beyond it the dense factors serve.
+// mostPlans bounds the memory of plans.
 const mostPlans = 400
 
 func newPlans(n int) plans {
@@ -20,7 +21,7 @@ func newPlans(n int) plans {
 // mostVariants bounds the plans of one set of active bounds; beyond it one counts on no zeros.
 const mostVariants = 8
 
-// get returns a plan for the present key and slopes, or nil where there is no room for one.
+// get returns the plan for the present key and slopes.
 func (ps *plans) get(j *Slopes) *plan {
 	if p := ps.last; p != nil && p.fits(ps.key, j) {
 		return p
@@ -38,23 +39,34 @@ func (ps *plans) get(j *Slopes) *plan {
 		}
 		variants++
 	}
-	if ps.count >= mostPlans {
-		return nil
-	}
-	if ps.maker == nil {
-		ps.maker = newPlanner(j.n)
-	}
-	p := ps.maker.make(j, ps.key, variants < mostVariants)
+	p := ps.unused(j.n)
+	ps.maker.make(p, j, ps.key, variants < mostVariants)
 	if variants < mostVariants {
 		p.next = ps.of[h]
 	}
 	ps.of[h] = p
-	ps.count++
 	if len(ps.work) < p.size {
 		ps.work = make([]float64, 2*p.size)
 	}
 	ps.last = p
 	return p
+}
+
+// unused returns room for a plan for n unknowns. When there are too many, all are
+// forgotten: those that still serve are soon made again.
+func (ps *plans) unused(n int) *plan {
+	if ps.maker == nil {
+		ps.maker = newPlanner(n)
+	}
+	if ps.count == mostPlans {
+		clear(ps.of)
+		ps.count = 0
+	}
+	if ps.count == len(ps.made) {
+		ps.made = append(ps.made, &plan{})
+	}
+	ps.count++
+	return ps.made[ps.count-1]
 }
 
 // fits reports whether p was made for this key and pattern, and works.
@@ -86,7 +98,7 @@ func (s *Solver) planned(a aim) bool {
 		return false
 	}
 	p := s.plans.get(s.j)
-	if p == nil || !p.sparse {
+	if !p.sparse {
 		return false
 	}
 	if !p.run(s.n, s.j.val, s.plans.work) {
