@@ -1,7 +1,9 @@
 package audit
 
 import (
+	"bytes"
 	"fmt"
+	"io"
 	"os"
 	"path/filepath"
 	"slices"
@@ -148,7 +150,8 @@ type File struct {
 
 	Axes     []duty.Axis
 	Duties   []*duty.Duty
-	Sources  []Source // by duty; the zero Source where the points stand in the audit file
+	Sources  []Source  // by duty; the zero Source where the points stand in the audit file
+	Imports  []*Import // by duty; nil where no recipe says how its recording is read
 	Circuits []CircuitEntry
 
 	data   []byte
@@ -204,8 +207,29 @@ type CircuitEntry struct {
 }
 
 // Open reads a file that an audit file names, by its path relative to the audit
-// file, with forward slashes.
-type Open func(name string) ([]byte, error)
+// file, with forward slashes. It is read as it comes, for it may be long.
+type Open func(name string) (io.ReadCloser, error)
+
+// FromBytes makes an Open of what hands over whole files.
+func FromBytes(read func(name string) ([]byte, error)) Open {
+	return func(name string) (io.ReadCloser, error) {
+		data, err := read(name)
+		if err != nil {
+			return nil, err
+		}
+		return inMemory{bytes.NewReader(data)}, nil
+	}
+}
+
+type inMemory struct{ *bytes.Reader }
+
+func (inMemory) Close() error { return nil }
+
+// Beside opens the files in the folder of an audit file.
+func Beside(path string) Open {
+	dir := filepath.Dir(path)
+	return func(name string) (io.ReadCloser, error) { return os.Open(filepath.Join(dir, filepath.FromSlash(name))) }
+}
 
 // maxSize bounds what is read as an audit file; one with a hundred circuits
 // stays well below a megabyte.
@@ -226,10 +250,7 @@ func Read(path string) (*File, []circuit.Finding) {
 	if err != nil {
 		return nil, []circuit.Finding{{Level: circuit.Stops, Text: err.Error()}}
 	}
-	dir := filepath.Dir(path)
-	return Parse(data, func(name string) ([]byte, error) {
-		return os.ReadFile(filepath.Join(dir, filepath.FromSlash(name)))
-	}, path)
+	return Parse(data, Beside(path), path)
 }
 
 // Parse reads an audit file from memory, as Read does; open reads the recordings

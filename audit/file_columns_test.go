@@ -24,14 +24,14 @@ circuits:
   lines: []
 `
 
-const logger = `time,note,v1 [mm/s],F1,n,M [N m]
+const loggerRows = `time,note,v1 [mm/s],F1,n,M [N m]
 0,1,0,10,0,5
 1,1,0.5,10,60,5
 2,2,100,20,60,5
 `
 
 func logged(text, table string) (*File, []string) {
-	f, found := Parse([]byte(text), func(string) ([]byte, error) { return []byte(table), nil }, "")
+	f, found := Parse([]byte(text), FromBytes(func(string) ([]byte, error) { return []byte(table), nil }), "")
 	var said []string
 	for _, x := range found {
 		said = append(said, x.Text)
@@ -42,7 +42,7 @@ func logged(text, table string) (*File, []string) {
 // Columns are taken under the names of the recording, with the unit from where it stands;
 // those that are not named are left out.
 func TestColumnsOfARecording(t *testing.T) {
-	f, said := logged(loggerHead, logger)
+	f, said := logged(loggerHead, loggerRows)
 	if len(said) > 0 {
 		t.Fatal(said)
 	}
@@ -76,7 +76,7 @@ func TestColumnsThatAreWrong(t *testing.T) {
 		{"ram: 1 mm/s", "rum: 1 mm/s", `there is no axis "rum"; did you mean "ram"?`},
 		{"file: log.csv", `points: {t: [0 s, 1 s]}`, "points name their tracks themselves"},
 	} {
-		_, said := logged(strings.Replace(loggerHead, c.old, c.now, 1), logger)
+		_, said := logged(strings.Replace(loggerHead, c.old, c.now, 1), loggerRows)
 		if len(said) != 1 || !strings.Contains(said[0], c.want) {
 			t.Errorf("%s: got %q, want %q", c.now, said, c.want)
 		}

@@ -142,7 +142,7 @@ func (f *File) eachTrackList(d *draft, of string, edit func(duty *yaml.Node, key
 		if err := f.headsFromFile(d, i, of); err != nil {
 			return err
 		}
-		for _, key := range []string{"points", "columns"} {
+		for _, key := range []string{"points", "columns", "derived"} {
 			if err := edit(d.duty(i), key); err != nil {
 				return fmt.Errorf("duty %q, tracks of %s: %w", du.Name, of, err)
 			}
@@ -153,7 +153,7 @@ func (f *File) eachTrackList(d *draft, of string, edit func(duty *yaml.Node, key
 
 // headsFromFile refuses an edit of tracks whose names stand in a recording.
 func (f *File) headsFromFile(d *draft, i int, of string) error {
-	if f.Sources[i].File != "" && isNull(child(d.duty(i), "columns")) {
+	if f.Sources[i].File != "" && isNull(child(d.duty(i), "columns")) && isNull(child(d.duty(i), "import")) {
 		return fmt.Errorf("%s: duty %q takes tracks of it from the heads of %s; change the recording first", of, f.Duties[i].Name, f.Sources[i].File)
 	}
 	return nil

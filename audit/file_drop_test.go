@@ -60,9 +60,9 @@ func TestDropLayouts(t *testing.T) {
 		"RV1.vented.origin": ", origin: measured",
 		"T1.turn":           "turn: 1, ",
 	} {
-		f, found := audit.Parse([]byte(loose), func(string) ([]byte, error) {
+		f, found := audit.Parse([]byte(loose), audit.FromBytes(func(string) ([]byte, error) {
 			return []byte(pumpTable(pumpLaw, 0.035, 700, 1200, 1800, 2600)), nil
-		}, "press.yaml")
+		}), "press.yaml")
 		if f == nil || circuit.AnyStops(found) {
 			t.Fatal(found)
 		}

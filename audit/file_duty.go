@@ -7,6 +7,7 @@ import (
 
 	"gopkg.in/yaml.v3"
 
+	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/circuit/recording"
 	"barlitre/machines/units"
@@ -29,10 +30,21 @@ func (r *reader) duties(n, root *yaml.Node) {
 		} else {
 			line[name] = at.Line
 		}
+		r.file.Imports = append(r.file.Imports, nil)
 		d, src := r.duty(name, item)
 		r.file.Duties = append(r.file.Duties, d)
 		r.file.Sources = append(r.file.Sources, src)
 	}
+}
+
+// stops counts the findings that stop.
+func stops(found []circuit.Finding) (n int) {
+	for _, f := range found {
+		if f.Level == circuit.Stops {
+			n++
+		}
+	}
+	return n
 }
 
 // isAbsent reports whether a list is missing, and not just under a misspelt key,
@@ -51,7 +63,7 @@ func nameOf(item *yaml.Node) (string, *yaml.Node) {
 
 func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 	s := scope{duty: name, where: fmt.Sprintf("duty %q", name)}
-	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "standstill", "points", "file", "columns", "phases")
+	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "standstill", "points", "file", "columns", "sha256", "import", "derived", "phases")
 	d := &duty.Duty{Name: name}
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
@@ -66,10 +78,10 @@ func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 	d.Repeats = r.flag(s, f, "repeats", true)
 	d.Sampled = !r.flag(s, f, "instants", true)
 	d.Standstill = r.standstill(s, f["standstill"].value)
-	before := len(r.found)
+	before := stops(r.found)
 	src, at := r.points(s, d, f, n)
 	if step, ok := r.optional(s, f, "step", units.Time); !ok {
-		d.Step = defaultStep(d.Cycle())
+		d.Step = stepOf(d, src.File != "")
 	} else if d.Step = step.SI; step.SI < 0 {
 		r.bad(s, f["step"].value, "step", "is %s, must not be below 0; 0 s means the rows only", step.Text)
 	}
@@ -78,12 +90,26 @@ func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 			d.Phases = append(d.Phases, duty.Phase{Name: e.key, From: v.SI})
 		}
 	}
-	if len(r.found) == before { // else it would be about numbers that could not be read
+	if stops(r.found) == before { // else it would be about numbers that could not be read
 		for _, p := range d.Check() {
 			r.book(s, at[p.Track], p.Track, p.Error())
 		}
 	}
 	return d, src
+}
+
+// rowsEnough is how many rows a recording must have for them alone to be the time steps.
+// A table with fewer is a few points as if typed, with straight lines of power between them
+// that a load and a speed, both rising, do not have.
+const rowsEnough = 100
+
+// stepOf returns the step of a duty that gives none [s]: none between the rows of a
+// recording, which knows nothing of what was between them.
+func stepOf(d *duty.Duty, recorded bool) float64 {
+	if recorded && len(d.Time) >= rowsEnough {
+		return 0
+	}
+	return defaultStep(d.Cycle())
 }
 
 // defaultStep returns a thousandth of the cycle [s], rounded to 1, 2 or 5 (by
@@ -151,7 +177,14 @@ func (r *reader) points(s scope, d *duty.Duty, f map[string]entry, n *yaml.Node)
 			r.bad(s, c.at, "columns", "are of a file; points name their tracks themselves")
 		}
 		return Source{}, r.typed(s, d, pts)
+	case recorded && f["import"].at != nil:
+		return r.imported(s, d, f), map[string]*yaml.Node{"": file.value}
 	case recorded:
+		for _, key := range []string{"sha256", "derived"} {
+			if e, ok := f[key]; ok {
+				r.bad(s, e.at, key, "goes with import, which says how a recording is read")
+			}
+		}
 		return r.recorded(s, d, file.value, f["columns"]), map[string]*yaml.Node{"": file.value}
 	default:
 		r.bad(s, n, "points", "are missing; write points: {t: [0 s, ...], ...} or file: name.csv")

@@ -201,7 +201,7 @@ func (f *File) take(what string, d *draft, holds func(*File) bool) error {
 		same := func(o circuit.Finding) bool {
 			return withoutLines(o.Text) == withoutLines(n.Text) && o.Circuit == n.Circuit
 		}
-		if !isUndrawn(n) && !slices.ContainsFunc(f.found, same) && !slices.ContainsFunc(errs, func(e error) bool { return e.Error() == n.Text }) {
+		if n.Level == circuit.Stops && !isUndrawn(n) && !slices.ContainsFunc(f.found, same) && !slices.ContainsFunc(errs, func(e error) bool { return e.Error() == n.Text }) {
 			errs = append(errs, errors.New(n.Text))
 		}
 	}

@@ -40,7 +40,7 @@ func leaves(n *yaml.Node) []string {
 // value (or adds one) and nothing else.
 func FuzzParse(f *testing.F) {
 	seeds(f)
-	open := func(string) ([]byte, error) { return []byte("t [s]; ram.speed [m/s]\n0;0\n1;0\n"), nil }
+	open := FromBytes(func(string) ([]byte, error) { return []byte("t [s]; ram.speed [m/s]\n0;0\n1;0\n"), nil })
 	f.Fuzz(func(t *testing.T, data []byte) {
 		a, found := Parse(data, open, "x.yaml")
 		for _, n := range found {

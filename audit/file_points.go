@@ -1,6 +1,7 @@
 package audit
 
 import (
+	"bytes"
 	"fmt"
 
 	"gopkg.in/yaml.v3"
@@ -20,7 +21,7 @@ func (r *reader) measured(s scope, b *circuit.Block, kind *circuit.Kind, n *yaml
 	if table == nil || !ok || full.SI <= 0 {
 		return // said already, or said by the check
 	}
-	got, _, err := machines.ReadPoints(pointColumns(table.Table), table.Lines, full.SI)
+	got, _, err := machines.ReadPoints(table.asWritten(), table.Lines(), full.SI)
 	if err != nil {
 		r.bad(s, n, "points", "%s: %v", name, err)
 		return
@@ -43,11 +44,11 @@ func (r *reader) measured(s scope, b *circuit.Block, kind *circuit.Kind, n *yaml
 // machines.ReadPoints take it. name is for messages; full is the displacement at full setting [m³/rad], 0 for the largest
 // in the table, and comes back.
 func FitTable(name string, data []byte, full float64, oil machines.Fluid) (*machines.Measured, float64, *machines.Fit, error) {
-	table, faults := recording.ReadTable(name, data)
+	table, faults := recording.ReadTable(name, bytes.NewReader(data))
 	if table == nil {
 		return nil, full, nil, faults[0]
 	}
-	got, full, err := machines.ReadPoints(pointColumns(table), table.Lines, full)
+	got, full, err := machines.ReadPoints(pointColumns(table), table.Lines(), full)
 	if err != nil {
 		return nil, full, nil, fmt.Errorf("%s: %w", name, err)
 	}

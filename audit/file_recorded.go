@@ -11,6 +11,8 @@ import (
 
 	"barlitre/circuit/duty"
 	"barlitre/circuit/recording"
+	"barlitre/circuit/recording/logger"
+	"barlitre/machines"
 	"barlitre/machines/units"
 )
 
@@ -49,15 +51,31 @@ func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node, columns entry) So
 
 // beside reads the table that a key names, beside the audit file.
 func (r *reader) beside(s scope, n *yaml.Node, key string) (table *recorded, name string) {
-	name, ok := r.scalar(s, n, key, "the name of a CSV file")
+	name, ok := r.besideName(s, n, key)
 	if !ok {
 		return nil, name
 	}
+	return r.table(s, n, key, name), name
+}
+
+// besideName reads the name of a file beside the audit file.
+func (r *reader) besideName(s scope, n *yaml.Node, key string) (name string, ok bool) {
+	if name, ok = r.scalar(s, n, key, "the name of a CSV file"); !ok {
+		return name, false
+	}
 	if strings.Contains(name, `\`) || !filepath.IsLocal(filepath.FromSlash(name)) {
 		r.bad(s, n, key, "%q must lie beside the audit file or in a folder below it; write folder/name.csv", name)
-		return nil, name
+		return name, false
 	}
-	return r.table(s, n, key, name), name
+	return name, true
+}
+
+// cannotRead says that a file cannot be read, without its path on this computer.
+func cannotRead(name string, err error) error {
+	if pe := (*fs.PathError)(nil); errors.As(err, &pe) {
+		return fmt.Errorf("%s cannot be read: %w; put it beside the audit file", name, pe.Err)
+	}
+	return err
 }
 
 // recordedTrack is a column of a recording as a track.
@@ -113,14 +131,18 @@ func (r *reader) track(s scope, d *duty.Duty, tr recordedTrack) {
 		r.bad(s, tr.at, tr.name, "%v, between brackets in the head", err)
 		return
 	}
-	r.keep(d, tr.name, tr.table.in(*tr.Column, u))
+	r.keep(d, tr.name, tr.table.values(*tr.Column, u))
 }
 
 // recorded is a recording with its columns as a duty has them: an edit reads the audit
-// file again, but neither the recording nor its units.
+// file again, but neither the recording nor its units. A column is converted where it
+// stands, for a day at 100 Hz is not to be kept twice.
 type recorded struct {
-	*recording.Table
-	si map[columnIn][]float64
+	*recording.Table // nil where it was imported by a recipe
+	rec              *logger.Recording
+	channels         map[string][]float64  // of rec, by column, SI
+	in               map[string]units.Unit // by column: the unit that its values were in before they were converted
+	si               map[columnIn][]float64
 }
 
 type columnIn struct {
@@ -128,20 +150,41 @@ type columnIn struct {
 	unit   units.Unit
 }
 
-// in returns a column in SI; one that is in SI is not copied.
-func (t *recorded) in(c recording.Column, u units.Unit) []float64 {
-	if u.Factor == 1 && u.Offset == 0 {
+// values returns a column in SI; u is the unit that it is in in the file.
+func (t *recorded) values(c recording.Column, u units.Unit) []float64 {
+	was, converted := t.in[c.Name]
+	if !converted {
+		for i, x := range c.Values {
+			c.Values[i] = u.ToSI(x)
+		}
+		t.in[c.Name], was = u, u
+	}
+	if was == u {
 		return c.Values
 	}
-	of := columnIn{c.Name, u}
+	of := columnIn{c.Name, u} // the same column in another unit
 	if t.si[of] == nil {
 		si := make([]float64, len(c.Values))
 		for i, x := range c.Values {
-			si[i] = u.ToSI(x)
+			si[i] = u.ToSI(was.FromSI(x))
 		}
 		t.si[of] = si
 	}
 	return t.si[of]
+}
+
+// asWritten returns the columns in the units of the file.
+func (t *recorded) asWritten() []machines.Column {
+	out := pointColumns(t.Table)
+	for i, c := range out {
+		if u, converted := t.in[c.Name]; converted && (u.Factor != 1 || u.Offset != 0) {
+			out[i].Values = make([]float64, len(c.Values))
+			for k, x := range c.Values {
+				out[i].Values[k] = u.FromSI(x)
+			}
+		}
+	}
+	return out
 }
 
 // table reads a recording, once.
@@ -154,21 +197,22 @@ func (r *reader) table(s scope, n *yaml.Node, key, name string) *recorded {
 		r.bad(s, n, key, "%s cannot be read: the audit has no folder yet; save it first", name)
 		return nil
 	}
-	data, err := f.open(name)
+	in, err := f.open(name)
 	if err != nil {
-		if pe := (*fs.PathError)(nil); errors.As(err, &pe) {
-			err = pe.Err // its path is that of this computer
+		if pe := (*fs.PathError)(nil); !errors.As(err, &pe) {
+			err = fmt.Errorf("%s cannot be read: %w; put it beside the audit file", name, err)
 		}
-		r.bad(s, n, key, "%s cannot be read: %v; put it beside the audit file", name, err)
+		r.bad(s, n, key, "%v", cannotRead(name, err))
 		return nil
 	}
-	t, faults := recording.ReadTable(name, data)
+	defer in.Close()
+	t, faults := recording.ReadTable(name, in)
 	for _, fault := range faults {
 		r.bad(s, n, key, "%v", fault)
 	}
 	if t == nil {
 		return nil
 	}
-	f.tables[name] = &recorded{t, map[columnIn][]float64{}}
+	f.tables[name] = &recorded{Table: t, in: map[string]units.Unit{}, si: map[columnIn][]float64{}}
 	return f.tables[name]
 }

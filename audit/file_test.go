@@ -116,7 +116,7 @@ func TestUneditedBytes(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	open := func(name string) ([]byte, error) { return os.ReadFile("testdata/" + name) }
+	open := Beside("testdata/full.yaml")
 	for name, data := range map[string][]byte{
 		"as it is":        text,
 		"CRLF":            bytes.ReplaceAll(text, []byte("\n"), []byte("\r\n")),

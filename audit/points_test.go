@@ -53,7 +53,7 @@ var pumpLaw = machines.Displacement{D: 45 * units.CubicCentimetrePerRev, Cs: 9e-
 
 // parsePress reads the press with one file beside it.
 func parsePress(press, table string) (*audit.File, []circuit.Finding) {
-	return audit.Parse([]byte(press), func(string) ([]byte, error) { return []byte(table), nil }, "press.yaml")
+	return audit.Parse([]byte(press), audit.FromBytes(func(string) ([]byte, error) { return []byte(table), nil }), "press.yaml")
 }
 
 // The coefficients of a pump come from its measured points, are shown as such, and go into the balance.

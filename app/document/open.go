@@ -131,10 +131,9 @@ func (d *Document) replace(f *audit.File, o origin, saved []byte, past history) 
 func (o origin) opener() audit.Open {
 	switch {
 	case o.Path != "":
-		dir := filepath.Dir(o.Path)
-		return func(name string) ([]byte, error) { return os.ReadFile(filepath.Join(dir, filepath.FromSlash(name))) }
+		return audit.Beside(o.Path)
 	case o.Sample != "":
-		return samples.Read
+		return audit.FromBytes(samples.Read)
 	}
 	return nil
 }

@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"errors"
 	"fmt"
+	"io"
 	"os"
 	"path/filepath"
 	"slices"
@@ -178,7 +179,7 @@ func (d *Document) copyRecordings(now state, path string) (made []string, err er
 		if s.File == "" || open == nil {
 			continue
 		}
-		data, err := open(s.File)
+		data, err := wholeFile(open, s.File)
 		if err != nil {
 			return made, fmt.Errorf("save %s: the recording %s cannot be read to be copied along: %w%s", path, filepath.Join(from, s.File), plain(err), d.safe(now))
 		}
@@ -195,6 +196,15 @@ func (d *Document) copyRecordings(now state, path string) (made []string, err er
 		made = append(made, target)
 	}
 	return made, nil
+}
+
+func wholeFile(open audit.Open, name string) ([]byte, error) {
+	in, err := open(name)
+	if err != nil {
+		return nil, err
+	}
+	defer in.Close()
+	return io.ReadAll(in)
 }
 
 func copyTo(path string, data []byte) error {

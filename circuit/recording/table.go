@@ -14,6 +14,7 @@
 package recording
 
 import (
+	"bufio"
 	"bytes"
 	"crypto/sha256"
 	"encoding/csv"
@@ -21,6 +22,8 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"io/fs"
+	"slices"
 	"strconv"
 	"strings"
 	"unicode/utf8"
@@ -36,8 +39,31 @@ type Column struct {
 // Table is a table of numbers.
 type Table struct {
 	Columns []Column
-	Lines   []int32 // of the file, by row, from 1
-	SHA256  string  // of the bytes read, in hexadecimal
+	SHA256  string // of the bytes read, in hexadecimal
+
+	rows  int
+	steps []step // where rows stop following line by line
+}
+
+// step says that a row, from 0, stands in a line, and the rows after it in the lines after it.
+type step struct{ row, line int }
+
+// Rows returns how many rows the table has.
+func (t *Table) Rows() int { return t.rows }
+
+// Lines returns the line of the file, from 1, that each row stands in.
+func (t *Table) Lines() []int32 {
+	out := make([]int32, 0, t.rows)
+	for i, s := range t.steps {
+		end := t.rows
+		if i+1 < len(t.steps) {
+			end = t.steps[i+1].row
+		}
+		for row := s.row; row < end; row++ {
+			out = append(out, int32(s.line+row-s.row))
+		}
+	}
+	return out
 }
 
 // Column returns a column by name, or nil.
@@ -72,16 +98,36 @@ const maxFaults = 10
 // semicolons or tabs it may be a comma instead, one of the two throughout the
 // file. A byte order mark, CRLF line ends, blank lines and lines that start
 // with # are passed over. The table is nil when there is any fault; the first
-// few are listed. name is for messages only.
-func ReadTable(name string, data []byte) (*Table, []Fault) {
-	r := &tableReader{name: name, table: &Table{}}
-	sum := sha256.Sum256(data)
-	r.table.SHA256 = hex.EncodeToString(sum[:])
-	r.read(bytes.TrimPrefix(data, []byte("\ufeff")))
+// few are listed. The text is read as it comes and not kept. name is for messages only.
+func ReadTable(name string, in io.Reader) (*Table, []Fault) {
+	r := &tableReader{name: name, table: &Table{}, size: sizeOf(in)}
+	sum := sha256.New()
+	src := bufio.NewReaderSize(io.TeeReader(in, sum), headSize)
+	r.read(src)
 	if len(r.faults) > 0 {
 		return nil, r.faults
 	}
+	if _, err := io.Copy(io.Discard, src); err != nil {
+		return nil, []Fault{{name, 0, err.Error()}}
+	}
+	r.table.SHA256 = hex.EncodeToString(sum.Sum(nil))
 	return r.table, nil
+}
+
+// headSize is how much of a file is looked at for its separator and the length of its lines.
+const headSize = 1 << 16
+
+// sizeOf returns how many bytes a reader has, 0 when it does not tell.
+func sizeOf(in io.Reader) int64 {
+	switch x := in.(type) {
+	case interface{ Len() int }:
+		return int64(x.Len())
+	case interface{ Stat() (fs.FileInfo, error) }:
+		if info, err := x.Stat(); err == nil {
+			return info.Size()
+		}
+	}
+	return 0
 }
 
 type tableReader struct {
@@ -89,6 +135,7 @@ type tableReader struct {
 	table  *Table
 	faults []Fault
 	comma  rune
+	size   int64
 	// lines at which a decimal point and a decimal comma were first seen
 	pointLine, commaLine int
 }
@@ -102,13 +149,15 @@ func (r *tableReader) bad(line int, format string, args ...any) {
 	}
 }
 
-func (r *tableReader) read(data []byte) {
-	if !utf8.Valid(data) || bytes.IndexByte(data, 0) >= 0 {
-		r.bad(0, "is not UTF-8 text; save it as CSV in UTF-8")
-		return
+func (r *tableReader) read(in *bufio.Reader) {
+	start, _ := in.Peek(headSize)
+	if bytes.HasPrefix(start, []byte("\ufeff")) {
+		start = start[len("\ufeff"):]
+		_, _ = in.Discard(len("\ufeff"))
 	}
-	r.comma = separator(data)
-	c := csv.NewReader(bytes.NewReader(data))
+	r.comma = separator(start)
+	rows := r.expected(start)
+	c := csv.NewReader(in)
 	c.Comma, c.Comment, c.FieldsPerRecord, c.TrimLeadingSpace, c.ReuseRecord = r.comma, '#', -1, r.comma != '\t', true
 	head := true
 	for len(r.faults) <= maxFaults {
@@ -119,6 +168,13 @@ func (r *tableReader) read(data []byte) {
 		if pe := (*csv.ParseError)(nil); errors.As(err, &pe) {
 			r.bad(pe.Line, "%v", pe.Err)
 			return
+		} else if err != nil {
+			r.bad(0, "cannot be read: %v", err)
+			return
+		}
+		if slices.ContainsFunc(cells, func(s string) bool { return !utf8.ValidString(s) || strings.IndexByte(s, 0) >= 0 }) {
+			r.bad(0, "is not UTF-8 text; save it as CSV in UTF-8")
+			return
 		}
 		line, _ := c.FieldPos(0)
 		if len(cells) == 1 && strings.TrimSpace(cells[0]) == "" {
@@ -126,7 +182,7 @@ func (r *tableReader) read(data []byte) {
 		}
 		if head {
 			r.head(line, cells)
-			r.reserve(min(bytes.Count(data, []byte("\n")), len(data)/(2*len(cells)))) // a cell and its separator are two bytes
+			r.reserve(rows)
 			head = false
 			continue
 		}
@@ -134,9 +190,18 @@ func (r *tableReader) read(data []byte) {
 	}
 	if head {
 		r.bad(0, "is empty; write a head such as %q and rows of numbers", "t [s]; ram.speed [m/s]")
-	} else if len(r.table.Lines) == 0 && len(r.faults) == 0 {
+	} else if r.table.rows == 0 && len(r.faults) == 0 {
 		r.bad(0, "has a head but no rows")
 	}
+}
+
+// expected guesses how many rows there are from how many lines the start has.
+func (r *tableReader) expected(start []byte) int {
+	n := bytes.Count(start, []byte("\n"))
+	if r.size > int64(len(start)) && len(start) > 0 {
+		return int(float64(n) * float64(r.size) / float64(len(start)) * 1.02)
+	}
+	return n
 }
 
 // separator guesses from the first line that is neither blank nor a comment.
@@ -175,7 +240,6 @@ func (r *tableReader) head(line int, cells []string) {
 
 // reserve makes room for rows: a long recording would else be copied as it grows.
 func (r *tableReader) reserve(rows int) {
-	r.table.Lines = make([]int32, 0, rows)
 	for i := range r.table.Columns {
 		r.table.Columns[i].Values = make([]float64, 0, rows)
 	}
@@ -203,7 +267,10 @@ func (r *tableReader) row(line int, cells []string) {
 		r.bad(line, "has %d cells, the head has %d%s", len(cells), n, hint)
 		return
 	}
-	r.table.Lines = append(r.table.Lines, int32(line))
+	if t := r.table; len(t.steps) == 0 || line-t.rows != t.steps[len(t.steps)-1].line-t.steps[len(t.steps)-1].row {
+		t.steps = append(t.steps, step{t.rows, line})
+	}
+	r.table.rows++
 	for i, cell := range cells {
 		x, text := r.number(line, strings.TrimSpace(cell))
 		if text != "" {

@@ -1,6 +1,7 @@
 package recording
 
 import (
+	"bytes"
 	"slices"
 	"strings"
 	"testing"
@@ -17,26 +18,26 @@ func TestReadTable(t *testing.T) {
 		"remarks and blank lines":  "# logger 3, channel 1, 2\n\nt [s]; ram.speed [m/s]\n\n0; 0\n# pause\n  \n0,5 ; -0,15 ",
 		"no space before unit":     "t[s];ram.speed [ m/s ]\n0;0\n+0,5;-0,15\n",
 	} {
-		tab, faults := ReadTable("x.csv", []byte(text))
+		tab, faults := ReadTable("x.csv", strings.NewReader(text))
 		if len(faults) > 0 {
 			t.Errorf("%s: %v", name, faults)
 			continue
 		}
 		a, b := tab.Column("t"), tab.Column("ram.speed")
 		if len(tab.Columns) != 2 || a == nil || b == nil || a.Unit != "s" || b.Unit != "m/s" ||
-			!slices.Equal(a.Values, []float64{0, 0.5}) || !slices.Equal(b.Values, []float64{0, -0.15}) || len(tab.Lines) != 2 {
+			!slices.Equal(a.Values, []float64{0, 0.5}) || !slices.Equal(b.Values, []float64{0, -0.15}) || tab.Rows() != 2 {
 			t.Errorf("%s: got %+v", name, tab)
 		}
 	}
 }
 
 func TestReadTableNotes(t *testing.T) {
-	tab, faults := ReadTable("x.csv", []byte("# a\nt [s];V1.command\n\n0;1\n1;0,5\n"))
-	if len(faults) > 0 || tab.Columns[1].Unit != "" || !slices.Equal(tab.Lines, []int32{4, 5}) {
+	tab, faults := ReadTable("x.csv", strings.NewReader("# a\nt [s];V1.command\n\n0;1\n1;0,5\n"))
+	if len(faults) > 0 || tab.Columns[1].Unit != "" || !slices.Equal(tab.Lines(), []int32{4, 5}) {
 		t.Errorf("got %+v, %v", tab, faults)
 	}
 	// printf 't [s]\n0\n' | sha256sum
-	tab, _ = ReadTable("x.csv", []byte("t [s]\n0\n"))
+	tab, _ = ReadTable("x.csv", strings.NewReader("t [s]\n0\n"))
 	if want := "5666c362651c74a5ef39f387ab26138da517110442cdc439f0ce67f57a2921fd"; tab.SHA256 != want {
 		t.Errorf("SHA-256 %s, want %s", tab.SHA256, want)
 	}
@@ -69,7 +70,7 @@ func TestReadTableFaults(t *testing.T) {
 		"t [\xb0C]; a [m]\n0;0\n":       "x.csv: is not UTF-8 text",
 		"\xff\xfet\x00 \x00[\x00s\x00]": "x.csv: is not UTF-8 text",
 	} {
-		tab, faults := ReadTable("x.csv", []byte(text))
+		tab, faults := ReadTable("x.csv", strings.NewReader(text))
 		if tab != nil || len(faults) == 0 || !strings.Contains(faults[0].Error(), want) {
 			t.Errorf("%q: got %v, want %q", text, faults, want)
 		}
@@ -78,7 +79,7 @@ func TestReadTableFaults(t *testing.T) {
 
 // All faults are listed, up to a limit that keeps the list readable.
 func TestReadTableManyFaults(t *testing.T) {
-	_, faults := ReadTable("x.csv", []byte("t [s]\n"+strings.Repeat("x\n", 500)))
+	_, faults := ReadTable("x.csv", strings.NewReader("t [s]\n"+strings.Repeat("x\n", 500)))
 	if len(faults) != maxFaults+1 || faults[9].Line != 11 || !strings.Contains(faults[maxFaults].Text, "more faults follow") {
 		t.Errorf("got %d: %v", len(faults), faults)
 	}
@@ -88,7 +89,7 @@ func FuzzReadTable(f *testing.F) {
 	f.Add([]byte("t [s]; a [m]\n0;1,5\n"))
 	f.Add([]byte("\ufefft [s],\"a [m]\"\r\n0,1.5\r\n"))
 	f.Fuzz(func(t *testing.T, data []byte) {
-		tab, faults := ReadTable("x.csv", data)
+		tab, faults := ReadTable("x.csv", bytes.NewReader(data))
 		if (tab == nil) != (len(faults) > 0) {
 			t.Fatal("a table and faults, or neither")
 		}
@@ -96,8 +97,8 @@ func FuzzReadTable(f *testing.F) {
 			return
 		}
 		for _, c := range tab.Columns {
-			if len(c.Values) != len(tab.Lines) || c.Name == "" {
-				t.Fatalf("column %+v of %d rows", c, len(tab.Lines))
+			if len(c.Values) != tab.Rows() || c.Name == "" {
+				t.Fatalf("column %+v of %d rows", c, tab.Rows())
 			}
 		}
 	})

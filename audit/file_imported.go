@@ -1,0 +1,232 @@
+package audit
+
+import (
+	"context"
+	"fmt"
+	"io"
+	"io/fs"
+	"reflect"
+	"slices"
+	"strings"
+
+	"gopkg.in/yaml.v3"
+
+	"barlitre/circuit"
+	"barlitre/circuit/duty"
+	"barlitre/circuit/recording/logger"
+	"barlitre/machines/units"
+)
+
+// Import is what a duty was taken from by a recipe: the recording of a logger and what was
+// found and done on the way.
+type Import struct {
+	File, SHA256 string
+	Expected     string // SHA-256 that the audit file has; "" = none
+	Recipe       logger.Recipe
+	Rows         int
+	Interval     float64 // s, median
+	Start        string  // date and clock of the first row, where the recording has them
+	Corrections  []logger.Correction
+	Marks        []logger.Mark
+	Derived      []Derived
+}
+
+// Derived is a track that was worked out from channels.
+type Derived struct{ Track, Formula string }
+
+// imported reads the rows of a duty from a logger's recording by the recipe under import.
+func (r *reader) imported(s scope, d *duty.Duty, f map[string]entry) Source {
+	file, recipe := f["file"], f["import"]
+	name, ok := r.besideName(s, file.value, "file")
+	if !ok {
+		return Source{}
+	}
+	var rp logger.Recipe
+	if !r.recipe(s, recipe.value, &rp) {
+		return Source{File: name}
+	}
+	rec := r.recording(s, file.value, name, recipe.value, rp)
+	if rec == nil {
+		return Source{File: name}
+	}
+	im := &Import{File: name, SHA256: rec.SHA256, Recipe: rp, Rows: len(rec.Time), Interval: rec.Interval, Start: rec.Start, Corrections: rec.Corrections, Marks: rec.Marks}
+	if im.Expected = strings.ToLower(r.text(s, f, "sha256")); im.Expected != "" && im.Expected != rec.SHA256 {
+		r.told(s, circuit.Warns, f["sha256"].value, fmt.Sprintf("%s is not the file that this duty was made from: its SHA-256 is %s, the audit has %s; put the old file back, or look through the import again and keep the new number", name, rec.SHA256, im.Expected))
+	}
+	for _, c := range rec.Corrections {
+		level := circuit.Note
+		if c.Warns {
+			level = circuit.Warns
+		}
+		r.told(s, level, file.value, name+": "+c.String())
+	}
+	d.Time = rec.Time
+	r.channelTracks(s, d, rec, name, f["columns"].value)
+	im.Derived = r.derived(s, d, rec, f["derived"].value)
+	r.file.Imports[len(r.file.Imports)-1] = im
+	return Source{File: name, SHA256: rec.SHA256}
+}
+
+// told is a finding that stops nothing.
+func (r *reader) told(s scope, level circuit.Level, n *yaml.Node, text string) {
+	r.found = append(r.found, circuit.Finding{Level: level, Duty: s.duty, Parameter: "file", Text: s.where + ": " + text, Line: n.Line})
+}
+
+// recipe reads how a recording is read.
+func (r *reader) recipe(s scope, n *yaml.Node, to *logger.Recipe) bool {
+	in := s.in("import")
+	if isNull(n) || n.Kind != yaml.MappingNode {
+		r.bad(s, n, "import", "needs keys with values; barlitre import FILE prints them")
+		return false
+	}
+	before := len(r.found)
+	r.knownKeys(in, n, reflect.TypeOf(*to))
+	if len(r.found) > before {
+		return false
+	}
+	if err := n.Decode(to); err != nil {
+		r.bad(s, n, "import", "%s", strings.TrimPrefix(strings.Join(strings.Fields(err.Error()), " "), "yaml: "))
+		return false
+	}
+	return true
+}
+
+// knownKeys finds keys that a struct has no place for.
+func (r *reader) knownKeys(s scope, n *yaml.Node, t reflect.Type) {
+	for t.Kind() == reflect.Pointer {
+		t = t.Elem()
+	}
+	switch {
+	case t.Kind() == reflect.Slice && n.Kind == yaml.SequenceNode:
+		for _, item := range n.Content {
+			r.knownKeys(s, item, t.Elem())
+		}
+	case t.Kind() == reflect.Struct && n.Kind == yaml.MappingNode:
+		var known []string
+		field := map[string]reflect.Type{}
+		for i := range t.NumField() {
+			key, _, _ := strings.Cut(t.Field(i).Tag.Get("yaml"), ",")
+			if key != "-" && key != "" {
+				known, field[key] = append(known, key), t.Field(i).Type
+			}
+		}
+		for _, e := range r.entries(s, n, "import") {
+			if !slices.Contains(known, e.key) {
+				r.unknownKey(s, e, n, known)
+				continue
+			}
+			r.knownKeys(s.in(e.key), e.value, field[e.key])
+		}
+	}
+}
+
+// recording imports a file by a recipe, once for every text of the recipe.
+func (r *reader) recording(s scope, at *yaml.Node, name string, recipe *yaml.Node, rp logger.Recipe) *logger.Recording {
+	text, err := yaml.Marshal(recipe)
+	if err != nil {
+		r.bad(s, recipe, "import", "%v", err)
+		return nil
+	}
+	key := name + "\x00" + string(text)
+	if t := r.file.tables[key]; t != nil {
+		return t.rec
+	}
+	if r.file.open == nil {
+		r.bad(s, at, "file", "%s cannot be read: the audit has no folder yet; save it first", name)
+		return nil
+	}
+	rec, err := r.file.importFile(name, rp)
+	if err != nil {
+		r.bad(s, at, "file", "%v", cannotRead(name, err))
+		return nil
+	}
+	for k, t := range r.file.tables { // of the same file by another recipe: it is not asked for again
+		if t.rec != nil && strings.HasPrefix(k, name+"\x00") {
+			delete(r.file.tables, k)
+		}
+	}
+	r.file.tables[key] = &recorded{rec: rec, channels: map[string][]float64{}}
+	return rec
+}
+
+func (f *File) importFile(name string, rp logger.Recipe) (*logger.Recording, error) {
+	in, err := f.open(name)
+	if err != nil {
+		return nil, err
+	}
+	size := int64(0)
+	switch x := in.(type) {
+	case interface{ Stat() (fs.FileInfo, error) }:
+		if info, err := x.Stat(); err == nil {
+			size = info.Size()
+		}
+	case interface{ Size() int64 }:
+		size = x.Size()
+	}
+	in.Close()
+	file, err := logger.OpenSource(name, size, func() (io.ReadCloser, error) { return f.open(name) })
+	if err != nil {
+		return nil, err
+	}
+	return file.Import(context.Background(), rp, nil)
+}
+
+// channelTracks takes channels as they are: which track is which column.
+func (r *reader) channelTracks(s scope, d *duty.Duty, rec *logger.Recording, file string, n *yaml.Node) {
+	in := s.in("columns")
+	for _, e := range r.entries(s, n, "columns") {
+		if e.key == "t" {
+			r.bad(in, e.at, e.key, "the import says where the time stamps are; take it out")
+			continue
+		}
+		column, ok := r.scalar(in, e.value, e.key, "the name of a column")
+		if !ok {
+			continue
+		}
+		dim, ok := r.column(in, d, e.at, e.key)
+		if !ok {
+			continue
+		}
+		if v := r.channel(in, rec, e.value, e.key, column, dim); v != nil {
+			r.keep(d, e.key, v)
+		}
+	}
+}
+
+// channel returns the values of a column that must be of a quantity.
+func (r *reader) channel(s scope, rec *logger.Recording, at *yaml.Node, key, column string, dim units.Dim) []float64 {
+	c := rec.Find(column)
+	if c == nil {
+		var have []string
+		for _, x := range rec.Series {
+			have = append(have, x.Column)
+		}
+		r.bad(s, at, key, "%s has no channel %q%s", rec.Name, column, guess(column, have))
+		return nil
+	}
+	if c.Dim != dim {
+		was := c.Dim.Name()
+		if c.Quantity == "" {
+			was = "plain number"
+		}
+		r.bad(s, at, key, "%s: %q is a %s, must be a %s; say its quantity and unit in the import", rec.Name, column, was, dim.Name())
+		return nil
+	}
+	t := r.file.tableOf(rec)
+	if t == nil {
+		return c.Values()
+	}
+	if t.channels[column] == nil {
+		t.channels[column] = c.Values()
+	}
+	return t.channels[column]
+}
+
+func (f *File) tableOf(rec *logger.Recording) *recorded {
+	for _, t := range f.tables {
+		if t.rec == rec {
+			return t
+		}
+	}
+	return nil
+}

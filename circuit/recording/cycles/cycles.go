@@ -1,0 +1,357 @@
+package cycles
+
+import (
+	"fmt"
+	"math"
+	"slices"
+)
+
+// Input is a recording: rows in rising time. Motion is what moves (speeds, flows), Level
+// what is held (pressures, forces); each in its own unit. Power [W] is summed up to the
+// energy of a cycle, its negative part apart; Supply [W] tells what is off, and may be nil.
+type Input struct {
+	T      []float64
+	Motion [][]float64
+	Level  [][]float64
+	Power  []float64
+	Supply []float64
+}
+
+// Options changes how cycles are found; the zero value takes the defaults.
+type Options struct {
+	Moving, Held, Off float64 // shares of the top of a channel: above it moves, is held; below it is off
+	Shortest          float64 // s, of a state; a hundredth of the period when not given
+	Period            float64 // s; 0 = to be found
+}
+
+// Cycle is one cycle.
+type Cycle struct {
+	From, To           float64 // s
+	Positive, Negative float64 // J
+	Likeness           float64 // to the typical cycle, correlation -1..1
+}
+
+// Energy returns what a cycle takes, J: positive less what comes back.
+func (c Cycle) Energy() float64 { return c.Positive + c.Negative }
+
+// Length returns how long a cycle takes, s.
+func (c Cycle) Length() float64 { return c.To - c.From }
+
+// Spread tells how a quantity scatters over the cycles.
+type Spread struct{ Mean, Deviation, Least, Most, P10, P50, P90 float64 }
+
+// Result is what was found.
+type Result struct {
+	Period  float64 // s, mean over the cycles; 0 = nothing repeats
+	Height  float64 // of the peak of the autocorrelation, 1 = each cycle like the other
+	Cycles  []Cycle
+	States  []Stretch
+	Shares  []Share
+	Typical int // index of the cycle nearest to all others, -1 without cycles
+	Extreme int // index of the cycle that takes the most energy
+	Odd     int // index of the cycle least like the typical one
+	Energy  Spread
+	Length  Spread
+
+	in Input
+}
+
+// points is how many points a cycle is compared by.
+const points = 128
+
+// Find finds cycles and states.
+func Find(in Input, o Options) (*Result, error) {
+	if err := in.check(); err != nil {
+		return nil, err
+	}
+	o = o.filled()
+	r := &Result{in: in, Typical: -1, Extreme: -1, Odd: -1}
+	coarse := states(in, o)
+	runs := runsOf(in, coarse, o)
+	if len(runs) > 0 {
+		r.repeat(runs, o)
+	}
+	if o.Shortest == 0 && r.Period > 0 {
+		o.Shortest = r.Period / 100
+	}
+	r.States = states(in, o)
+	r.shares()
+	r.judge()
+	return r, nil
+}
+
+func (o Options) filled() Options {
+	for _, x := range []struct {
+		v *float64
+		d float64
+	}{{&o.Moving, defaultMoving}, {&o.Held, defaultHeld}, {&o.Off, defaultOff}} {
+		if !(*x.v > 0) {
+			*x.v = x.d
+		}
+	}
+	return o
+}
+
+func (in Input) check() error {
+	if len(in.T) < 16 || !(in.T[len(in.T)-1] > in.T[0]) {
+		return fmt.Errorf("%d rows are too few to find cycles in", len(in.T))
+	}
+	if len(in.Motion) == 0 {
+		return fmt.Errorf("name a channel that moves, such as a speed or a flow: cycles are found by it")
+	}
+	for _, v := range append(slices.Concat(in.Motion, in.Level), in.Power, in.Supply) {
+		if v != nil && len(v) != len(in.T) {
+			return fmt.Errorf("a channel has %d values for %d rows", len(v), len(in.T))
+		}
+	}
+	return nil
+}
+
+// run is a stretch of work with the short stands within it.
+type run struct{ a, b int } // rows
+
+// runsOf joins work over stands that are no longer than a few of the usual ones.
+func runsOf(in Input, s []Stretch, o Options) (out []run) {
+	var stands []float64
+	for i, x := range s {
+		if x.State != Work && i > 0 && i+1 < len(s) {
+			stands = append(stands, x.To-x.From)
+		}
+	}
+	longest := math.Inf(1)
+	if len(stands) > 0 {
+		slices.Sort(stands)
+		longest = 4 * stands[len(stands)*3/4]
+		if o.Period > 0 {
+			longest = math.Min(longest, o.Period)
+		}
+	}
+	last := math.Inf(-1)
+	for _, x := range s {
+		if x.State != Work {
+			continue
+		}
+		if n := len(out); n > 0 && x.From-last <= longest {
+			out[n-1].b = x.b
+		} else {
+			out = append(out, run{x.a, x.b})
+		}
+		last = x.To
+	}
+	return out
+}
+
+// repeat finds the period in the longest run and cuts all runs into cycles.
+func (r *Result) repeat(runs []run, o Options) {
+	t := r.in.T
+	long := slices.MaxFunc(runs, func(a, b run) int { return compare(t[a.b-1]-t[a.a], t[b.b-1]-t[b.a]) })
+	from, to := t[long.a], t[min(long.b, len(t)-1)]
+	n := min(maxLagSamples, long.b-long.a)
+	if n < 16 {
+		return
+	}
+	guess, height := o.Period, 1.0
+	if guess == 0 {
+		lag, h := period(autocorrelation(r.channels(from, to, n)))
+		guess, height = lag*(to-from)/float64(n-1), h
+	}
+	if guess <= 0 {
+		return
+	}
+	r.Height = height
+	template := r.shape(from, from+guess)
+	for _, run := range runs {
+		r.cut(t[run.a], t[min(run.b, len(t)-1)], guess, template)
+	}
+	if len(r.Cycles) < 2 {
+		r.Cycles = nil
+		return
+	}
+	for _, c := range r.Cycles {
+		r.Period += c.Length() / float64(len(r.Cycles))
+	}
+}
+
+func compare(a, b float64) int {
+	switch {
+	case a < b:
+		return -1
+	case a > b:
+		return 1
+	}
+	return 0
+}
+
+// channels resamples what moves and what is held, each in shares of its top.
+func (r *Result) channels(a, b float64, n int) (out [][]float64) {
+	lo, hi := r.rows(a, b)
+	for _, v := range slices.Concat(r.in.Motion, r.in.Level) {
+		out = append(out, even(r.in.T[lo:hi], v[lo:hi], a, b, n))
+	}
+	return out
+}
+
+// rows returns the rows around a stretch, two at least.
+func (r *Result) rows(a, b float64) (lo, hi int) {
+	t := r.in.T
+	lo, _ = slices.BinarySearch(t, a)
+	hi, _ = slices.BinarySearch(t, b)
+	lo, hi = max(0, lo-1), min(len(t), hi+1)
+	if hi-lo < 2 {
+		lo = max(0, hi-2)
+	}
+	return lo, hi
+}
+
+// shape is a cycle as one vector to compare by, each channel without its mean and of length 1.
+func (r *Result) shape(a, b float64) []float64 {
+	out := make([]float64, 0, points*(len(r.in.Motion)+len(r.in.Level)))
+	for _, c := range r.channels(a, b, points) {
+		mean, power := 0.0, 0.0
+		for _, x := range c {
+			mean += x / points
+		}
+		for i := range c {
+			c[i] -= mean
+			power += c[i] * c[i]
+		}
+		for i := range c {
+			if power > 0 {
+				c[i] /= math.Sqrt(power)
+			}
+		}
+		out = append(out, c...)
+	}
+	return out
+}
+
+// likeness is the mean correlation of the channels of two shapes.
+func likeness(a, b []float64) float64 {
+	sum := 0.0
+	for i := range a {
+		sum += a[i] * b[i]
+	}
+	return sum * points / float64(len(a))
+}
+
+// drift is how far a cycle may start from where it is expected, as a share of the period.
+const drift = 0.25
+
+// cut goes from cycle to cycle: the next one starts where what follows is most like the template.
+func (r *Result) cut(from, to, period float64, template []float64) {
+	end := r.in.T[len(r.in.T)-1]
+	for start := from; start+period*(1-drift) <= to && start+period <= end+0.01*period; {
+		at := start + period // of the last one no next one tells where it ends
+		if start+1.5*period <= to {
+			at = r.next(start, to, period, template)
+		}
+		if r.likeAt(start, period, template) >= leastHeight {
+			r.Cycles = append(r.Cycles, Cycle{From: start, To: math.Min(at, end)})
+		}
+		start = at
+	}
+}
+
+// likeAt compares what starts at s with the template.
+func (r *Result) likeAt(s, period float64, template []float64) float64 {
+	return likeness(r.shape(s, math.Min(s+period, r.in.T[len(r.in.T)-1])), template)
+}
+
+// next finds where the cycle after the one at start begins; of places alike, the one where it is expected.
+func (r *Result) next(start, to, period float64, template []float64) float64 {
+	best, at := math.Inf(-1), start+period
+	for k := -32; k <= 32; k++ {
+		s := start + period + period*drift*float64(k)/32
+		if s+0.5*period > to {
+			break
+		}
+		if l := r.likeAt(s, period, template) - 0.02*math.Abs(float64(k))/32; l > best {
+			best, at = l, s
+		}
+	}
+	return r.refined(at, period, template)
+}
+
+// refined finds the start between the places that were tried.
+func (r *Result) refined(at, period float64, template []float64) float64 {
+	step := period * drift / 32
+	for range 5 {
+		step /= 2
+		a, b, c := r.likeAt(at-step, period, template), r.likeAt(at, period, template), r.likeAt(at+step, period, template)
+		switch {
+		case a > b && a >= c:
+			at -= step
+		case c > b:
+			at += step
+		}
+	}
+	return at
+}
+
+// judge finds the typical and the extreme cycle and how energies scatter.
+func (r *Result) judge() {
+	if len(r.Cycles) == 0 {
+		return
+	}
+	r.energies()
+	stride := max(1, len(r.Cycles)/400)
+	var shapes [][]float64
+	var of []int
+	for i := 0; i < len(r.Cycles); i += stride {
+		shapes, of = append(shapes, r.shape(r.Cycles[i].From, r.Cycles[i].To)), append(of, i)
+	}
+	best := math.Inf(-1)
+	for i, a := range shapes {
+		sum := 0.0
+		for _, b := range shapes {
+			sum += likeness(a, b)
+		}
+		if sum > best {
+			best, r.Typical = sum, of[i]
+		}
+	}
+	typical := r.shape(r.Cycles[r.Typical].From, r.Cycles[r.Typical].To)
+	r.Extreme, r.Odd = 0, 0
+	var energy, length []float64
+	for i := range r.Cycles {
+		c := &r.Cycles[i]
+		c.Likeness = likeness(r.shape(c.From, c.To), typical)
+		if c.Energy() > r.Cycles[r.Extreme].Energy() {
+			r.Extreme = i
+		}
+		if c.Likeness < r.Cycles[r.Odd].Likeness {
+			r.Odd = i
+		}
+		energy, length = append(energy, c.Energy()), append(length, c.Length())
+	}
+	r.Energy, r.Length = spreadOf(energy), spreadOf(length)
+}
+
+func spreadOf(v []float64) (s Spread) {
+	n := float64(len(v))
+	for _, x := range v {
+		s.Mean += x / n
+	}
+	for _, x := range v {
+		s.Deviation += (x - s.Mean) * (x - s.Mean)
+	}
+	if s.Deviation = math.Sqrt(s.Deviation / math.Max(1, n-1)); n < 2 {
+		s.Deviation = 0
+	}
+	v = slices.Clone(v)
+	slices.Sort(v)
+	q := func(p float64) float64 { return v[int(math.Round(p*(n-1)))] }
+	s.Least, s.Most, s.P10, s.P50, s.P90 = v[0], v[len(v)-1], q(0.1), q(0.5), q(0.9)
+	return s
+}
+
+// Overlay returns a channel of the recording over each cycle at n points, cycle after
+// cycle, to be drawn on top of each other.
+func (r *Result) Overlay(channel []float64, n int) [][]float64 {
+	out := make([][]float64, 0, len(r.Cycles))
+	for _, c := range r.Cycles {
+		lo, hi := r.rows(c.From, c.To)
+		out = append(out, even(r.in.T[lo:hi], channel[lo:hi], c.From, c.To, n))
+	}
+	return out
+}

@@ -1,0 +1,474 @@
+package logger
+
+import (
+	"bytes"
+	"fmt"
+	"io"
+	"slices"
+	"strings"
+)
+
+// sample is the start of a file, cut into lines.
+type sample struct {
+	lines [][]byte
+	whole bool // there is no more of the file
+}
+
+const sampleLines = 3000
+
+func (f *File) sample(encoding string) sample {
+	s := sample{whole: f.Size <= headBytes}
+	for l := newLines(bytes.NewReader(text(f.head, encoding))); len(s.lines) < sampleLines; {
+		line := l.next()
+		if line == nil {
+			break
+		}
+		s.lines = append(s.lines, bytes.Clone(line))
+	}
+	if !s.whole && len(s.lines) > 1 && len(s.lines) < sampleLines {
+		s.lines = s.lines[:len(s.lines)-1] // cut in its middle
+	}
+	return s
+}
+
+// Guess finds out how a file is written. What it cannot tell is in Questions.
+func (f *File) Guess() Recipe {
+	r := Recipe{Decimal: "."}
+	why := ""
+	r.Encoding, why = encodingOf(f.head)
+	r.because(why != "", "%s: %s", r.Encoding, why)
+	s := f.sample(r.Encoding)
+	g := guesser{Recipe: &r, sample: s}
+	if !g.separators() {
+		r.ask("separator", "no rows of numbers were found; say what separates the columns", Separators...)
+		return r
+	}
+	g.notation()
+	g.heads()
+	g.columns()
+	g.times()
+	return r
+}
+
+func (r *Recipe) because(is bool, format string, args ...any) {
+	if is {
+		r.Reasons = append(r.Reasons, fmt.Sprintf(format, args...))
+	}
+}
+
+func (r *Recipe) ask(field, text string, choices ...string) {
+	r.Questions = append(r.Questions, Question{field, text, choices})
+}
+
+type guesser struct {
+	*Recipe
+	sample
+	split splitter
+	width int        // cells in a row
+	rows  [][][]byte // cells of rows of the sample
+	names []string
+	units []string // by column
+}
+
+// shape is what a line is, cut in one way.
+type shape struct {
+	cells, good, solid int // good: a number, a stamp or nothing; solid: not nothing
+}
+
+func shapeOf(cells [][]byte) (s shape) {
+	for len(cells) > 0 && len(cells[len(cells)-1]) == 0 {
+		cells = cells[:len(cells)-1] // a separator at the end
+	}
+	s.cells = len(cells)
+	for _, c := range cells {
+		switch {
+		case isBlank(c):
+			s.good++
+		case looksNumber(c):
+			s.good, s.solid = s.good+1, s.solid+1
+		default:
+			if d, k := isStamp(c); d || k {
+				s.good, s.solid = s.good+1, s.solid+1
+			}
+		}
+	}
+	return s
+}
+
+func (s shape) row() bool { return s.cells >= 1 && s.solid >= 1 && 2*s.good >= s.cells }
+
+// looksNumber reports whether a cell may be a number in some notation, with a unit or without.
+func looksNumber(cell []byte) bool {
+	for _, n := range []numbers{{decimal: '.', group: ','}, {decimal: ',', group: '.'}, {decimal: '.', group: ' '}, {decimal: ',', group: ' '}, {decimal: '.', group: '\''}, {decimal: ',', group: '\''}} {
+		if _, _, rest, ok := n.parse(cell); ok {
+			rest = trim(rest)
+			if len(rest) == 0 {
+				return true
+			}
+			if c := rest[0]; c < 'A' && c != '%' && c != '"' { // a figure or a sign: no unit begins so
+				continue
+			}
+			if _, known := unitOf(string(rest)); known {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// separators takes the separator with which most lines are rows of equally many numbers.
+func (g *guesser) separators() bool {
+	best := 0.0
+	for _, sep := range []string{"tab", ";", "|", ",", "space"} {
+		r := Recipe{Separator: sep}
+		score, width := g.score(newSplitter(&r))
+		if width >= 2 && score > best*1.001 {
+			best, g.Separator, g.width = score, sep, width
+		}
+	}
+	if best == 0 {
+		r := Recipe{Separator: ";"}
+		score, width := g.score(newSplitter(&r))
+		if score == 0 || width != 1 {
+			return false
+		}
+		g.Separator, g.width = ";", 1
+	}
+	if g.Separator == "space" {
+		g.fixed()
+	}
+	g.split = newSplitter(g.Recipe)
+	return true
+}
+
+func (g *guesser) score(s splitter) (score float64, width int) {
+	count := map[int]int{}
+	shapes := make([]shape, len(g.lines))
+	for i, line := range g.lines {
+		if shapes[i] = shapeOf(s.split(line, nil)); shapes[i].row() {
+			count[shapes[i].cells]++
+		}
+	}
+	rows := 0
+	for n, k := range count {
+		if k > rows || k == rows && n > width {
+			rows, width = k, n
+		}
+	}
+	for _, sh := range shapes {
+		if sh.row() && sh.cells >= width/2 && sh.cells <= width {
+			share := float64(sh.good) / float64(sh.cells)
+			score += share * share
+		}
+	}
+	return score, width
+}
+
+// fixed looks for columns of blanks through all rows, and takes them as ends of columns
+// where rows of words have unequal numbers of them or the head has more words than columns.
+func (g *guesser) fixed() {
+	s := splitter{}
+	var rows [][]byte
+	counts := map[int]int{}
+	head := 0
+	for _, line := range g.lines {
+		cells := s.split(line, nil)
+		if shapeOf(cells).row() {
+			rows = append(rows, line)
+			counts[len(cells)]++
+		} else if len(rows) == 0 && len(cells) > 0 {
+			head = len(cells)
+		}
+	}
+	if len(counts) == 1 && (head == 0 || counts[head] > 0) {
+		return
+	}
+	widths := blankColumns(rows)
+	if len(widths) < 2 {
+		return
+	}
+	f := splitter{widths: widths}
+	score, width := g.score(f)
+	if old, _ := g.score(s); width >= 2 && score >= 0.9*old {
+		g.Separator, g.Widths, g.width = "fixed", widths, len(widths)
+		g.because(true, "fixed width: blanks stand below each other in all rows")
+	}
+}
+
+// blankColumns returns where words begin after places that are blank in all rows.
+func blankColumns(rows [][]byte) (widths []int) {
+	var used []bool
+	for _, line := range rows {
+		for i, c := range []rune(string(line)) {
+			if i >= len(used) {
+				used = append(used, false)
+			}
+			used[i] = used[i] || c != ' ' && c != '\t'
+		}
+	}
+	for i, u := range used {
+		if u && (i == 0 || !used[i-1]) {
+			widths = append(widths, i)
+		}
+	}
+	for k := range widths { // numbers stand to the right, heads may begin before them: a column begins where the last one ends
+		if k == 0 {
+			widths[0] = 0
+			continue
+		}
+		end := widths[k]
+		for end > 0 && !used[end-1] {
+			end--
+		}
+		widths[k] = end
+	}
+	return widths
+}
+
+// notation finds the decimal sign and what parts thousands.
+func (g *guesser) notation() {
+	seen := styles{}
+	for i, line := range g.lines {
+		cells := g.split.split(line, nil)
+		if !shapeOf(cells).row() {
+			continue
+		}
+		if g.First == 0 {
+			g.First = i + 1
+		}
+		for _, c := range cells {
+			if d, k := isStamp(c); !d && !k && !isBlank(c) && looksNumber(c) {
+				seen.add(c)
+			}
+		}
+	}
+	switch {
+	case seen.comma > 0 && seen.point == 0 || seen.commaLast > 0:
+		g.Decimal = ","
+	case seen.comma == 0 && seen.point == 0 && seen.either[','] > 0 && seen.either['.'] == 0:
+		g.Decimal = ","
+		g.ambiguous(seen.example, ",")
+	case seen.comma == 0 && seen.point == 0 && seen.either['.'] > 0 && seen.either[','] == 0 && g.Separator != ",":
+		g.ambiguous(seen.example, ".")
+	}
+	other := byte(',')
+	if g.Decimal == "," {
+		other = '.'
+	}
+	switch {
+	case seen.group[other] > 0 || seen.either[other] > 0 && (seen.comma > 0 || seen.point > 0):
+		g.Thousands = string(other)
+	case seen.group[' '] > 0:
+		g.Thousands = " "
+	case seen.group['\''] > 0:
+		g.Thousands = "'"
+	}
+}
+
+// ambiguous asks whether the only sign ever seen, always before three figures, is decimal.
+func (g *guesser) ambiguous(example, sign string) {
+	other := "."
+	if sign == "." {
+		other = ","
+	}
+	g.ask("decimal", fmt.Sprintf("%q may have three decimals or thousands: every number of the file has three figures after its %q; say which sign is the decimal one", example, sign), sign, other)
+}
+
+// styles counts what numbers show of their notation.
+type styles struct {
+	comma, point         int // a decimal sign for sure
+	commaLast, pointLast int // both signs, this one last
+	either               map[byte]int
+	group                map[byte]int
+	example              string
+}
+
+func (s *styles) add(cell []byte) {
+	if s.either == nil {
+		s.either, s.group = map[byte]int{}, map[byte]int{}
+	}
+	if n := (&numbers{}); true {
+		if plain, changed := n.plain(cell); changed {
+			cell = bytes.Clone(plain)
+		}
+	}
+	for _, mark := range []byte{' ', '\''} {
+		if i := bytes.IndexByte(cell, mark); i > 0 && groupAt(cell, i, sign(cell)) {
+			s.group[mark]++
+		}
+	}
+	i, j := bytes.LastIndexByte(cell, ','), bytes.LastIndexByte(cell, '.')
+	switch {
+	case i < 0 && j < 0:
+	case i >= 0 && j >= 0 && i > j:
+		s.commaLast++
+		s.comma++
+		s.group['.']++
+	case i >= 0 && j >= 0:
+		s.pointLast++
+		s.point++
+		s.group[',']++
+	default:
+		mark, at := byte(','), i
+		if i < 0 {
+			mark, at = '.', j
+		}
+		first := bytes.IndexByte(cell, mark)
+		switch {
+		case first != at: // twice
+			s.group[mark]++
+		case groupAt(cell, at, sign(cell)) && cell[sign(cell)] != '0':
+			s.either[mark]++
+			s.example = string(cell)
+		case mark == ',':
+			s.comma++
+		default:
+			s.point++
+		}
+	}
+}
+
+func sign(cell []byte) int {
+	if len(cell) > 0 && (cell[0] == '-' || cell[0] == '+') {
+		return 1
+	}
+	return 0
+}
+
+// heads finds the first row, the line that names the columns and a line of their units.
+func (g *guesser) heads() {
+	n := g.width
+	g.First = 0
+	for i, line := range g.lines {
+		cells := g.split.split(line, nil)
+		sh := shapeOf(cells)
+		if !sh.row() || sh.cells*2 < n || sh.good*2 < n && sh.cells == n || g.unitLike(cells) {
+			continue
+		}
+		next, of := 0, 0
+		for k := i + 1; k < len(g.lines) && of < 6; k++ {
+			if len(bytes.TrimSpace(g.lines[k])) == 0 {
+				continue
+			}
+			of++
+			if s := shapeOf(g.split.split(g.lines[k], nil)); s.row() && s.cells*2 >= n {
+				next++
+			}
+		}
+		if 2*next >= of {
+			g.First = i + 1
+			break
+		}
+	}
+	if g.First == 0 {
+		g.First = 1
+	}
+	above := []int{}
+	for i := g.First - 2; i >= 0 && len(above) < 3; i-- {
+		line := bytes.TrimLeft(g.lines[i], "#%/ ")
+		cells := g.cellsOf(i + 1)
+		for len(cells) > n && len(cells[len(cells)-1]) == 0 {
+			cells = cells[:len(cells)-1]
+		}
+		if len(bytes.TrimSpace(line)) == 0 {
+			continue
+		}
+		if len(cells) > n+2 || 2*len(cells) < n || words(cells) == 0 {
+			break
+		}
+		above = append(above, i+1)
+	}
+	if len(above) > 0 && g.unitLike(g.cellsOf(above[0])) && len(above) > 1 {
+		g.UnitsRow, g.Head = above[0], above[1]
+	} else if len(above) > 0 {
+		g.Head = above[0]
+		if len(above) > 1 && g.unitLike(g.cellsOf(above[0])) {
+			g.UnitsRow = above[0]
+		}
+	}
+	for i := g.First - 1; i < len(g.lines); i++ {
+		if cells := g.split.split(g.lines[i], nil); shapeOf(cells).row() {
+			g.rows = append(g.rows, cells)
+		}
+	}
+}
+
+func (g *guesser) cellsOf(line int) [][]byte {
+	return g.split.head(g.lines[line-1])
+}
+
+// words counts the cells that are neither numbers nor empty.
+func words(cells [][]byte) (n int) {
+	for _, c := range cells {
+		if d, k := isStamp(c); len(c) > 0 && !looksNumber(c) && !d && !k {
+			n++
+		}
+	}
+	return n
+}
+
+// unitLike reports whether most cells that are not empty are units.
+func (g *guesser) unitLike(cells [][]byte) bool {
+	known, all := 0, 0
+	for _, c := range cells {
+		s := strings.TrimSpace(string(c))
+		if s == "" || s == "-" || s == "[-]" || s == "[]" {
+			continue
+		}
+		all++
+		if _, ok := unitOf(s); ok || strings.HasPrefix(s, "[") && strings.HasSuffix(s, "]") || strings.Contains(s, ":mm") || strings.EqualFold(s, "hh:mm:ss") {
+			known++
+		}
+	}
+	return all > 0 && 2*known > all
+}
+
+// header returns the names of the columns and their units as a recipe says.
+func (r *Recipe) header(lines [][]byte, width int) (names, units []string) {
+	split := newSplitter(r)
+	cells := func(line int) [][]byte {
+		if line < 1 || line > len(lines) {
+			return nil
+		}
+		return split.head(lines[line-1])
+	}
+	head, row := cells(r.Head), cells(r.UnitsRow)
+	for len(head) > width && len(head[len(head)-1]) == 0 {
+		head = head[:len(head)-1]
+	}
+	for i := range max(width, len(head)) {
+		name, unit := "", ""
+		if i < len(head) {
+			name, unit = nameAndUnit(string(head[i]))
+		}
+		if i < len(row) && len(row[i]) > 0 {
+			unit = strings.TrimSpace(strings.Trim(string(row[i]), "[]"))
+		}
+		if name == "" {
+			name = fmt.Sprintf("column %d", i+1)
+		}
+		for base, k := name, 2; slices.Contains(names, name); k++ {
+			name = fmt.Sprintf("%s (%d)", base, k)
+		}
+		names, units = append(names, name), append(units, unit)
+	}
+	return names, units
+}
+
+// heading reads the lines up to the first row.
+func (f *File) heading(r *Recipe) (lines [][]byte, err error) {
+	in, err := f.open()
+	if err != nil {
+		return nil, err
+	}
+	defer in.Close()
+	l := newLines(decoded(io.LimitReader(in, headBytes), r.Encoding))
+	for len(lines) < max(r.First, r.Head, r.UnitsRow) {
+		line := l.next()
+		if line == nil {
+			break
+		}
+		lines = append(lines, bytes.Clone(line))
+	}
+	return lines, nil
+}

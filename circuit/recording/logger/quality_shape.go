@@ -1,0 +1,197 @@
+package logger
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+
+	"barlitre/machines/units"
+)
+
+// Shares and factors below are our choice: wide enough that a sound recording is left in
+// peace, stated with each correction that they lead to.
+const (
+	senseless   = 20.0 // times the usual span beyond the middle: no quantity does that for a few rows
+	spikeShare  = 0.3  // of the span, for one row: a spike
+	restShare   = 0.1  // of all rows, at least, at rest
+	restBar     = 0.05 * units.Bar
+	noisyBelow  = 0.2 // share of equal neighbours of a channel that is alive
+	stuckShare  = 0.02
+	stuckRows   = 50
+	clippedRows = 3
+)
+
+// spikes looks for rows that stand alone, far from those around.
+func (q *inspector) spikes() {
+	if len(q.v) < 20 {
+		return
+	}
+	low, high := q.quantile(0.005), q.quantile(0.995)
+	middle, span := (low+high)/2, high-low
+	if !(span > 0) {
+		return
+	}
+	var far, alone []int
+	run := 0
+	for i, x := range q.v {
+		if math.Abs(x-middle) > senseless*span {
+			run++
+			far = append(far, i)
+			continue
+		}
+		if run > 3 {
+			far = far[:len(far)-run] // it lasts: a change of state
+		}
+		run = 0
+		if i > 0 && i+1 < len(q.v) {
+			a, b := x-q.v[i-1], x-q.v[i+1]
+			if least := math.Max(spikeShare*span, 5*math.Abs(a-b)); a*b > 0 && math.Min(math.Abs(a), math.Abs(b)) > least {
+				alone = append(alone, i)
+			}
+		}
+	}
+	q.spike("values of no sense", far, fmt.Sprintf("more than %g times the usual span away from the rest for up to three rows", senseless), "remove", "leave")
+	if len(alone)*50 < len(q.v) {
+		q.spike("spikes", alone, "alone far above or below both neighbours", "leave", "remove")
+	}
+}
+
+func (q *inspector) spike(key string, rows []int, text string, choices ...string) {
+	if len(rows) == 0 || len(rows)*50 > len(q.v) {
+		return
+	}
+	choice := q.pick(key, choices...)
+	worst := rows[0]
+	for _, i := range rows {
+		if math.Abs(q.v[i]) > math.Abs(q.v[worst]) {
+			worst = i
+		}
+	}
+	c := q.where(Correction{Key: key, Count: len(rows), Warns: true, Choice: choice, Choices: choices,
+		Text: fmt.Sprintf("%s %s, the largest %s at %.6g s", isRows(len(rows)), text, q.shown(q.v[worst]), q.Time[worst])}, rows[0])
+	if choice == "remove" {
+		c.Done = "taken as straight lines between the values around"
+		q.s.removed = append(q.s.removed, rows...)
+		slices.Sort(q.s.removed)
+		for _, i := range rows {
+			q.v[i] = math.NaN()
+		}
+		q.sorted = nil
+		q.sampled()
+	}
+	q.say(c)
+}
+
+func isRows(n int) string {
+	if n == 1 {
+		return "1 row is"
+	}
+	return fmt.Sprintf("%d rows are", n)
+}
+
+func (q *inspector) shown(si float64) string {
+	return strings.TrimSpace(fmt.Sprintf("%.5g %s", q.s.unit.FromSI(si), q.s.Unit))
+}
+
+// pressure looks at where a pressure rests: against vacuum it rests at that of the air, and
+// below that of the air it hardly rests at all.
+func (q *inspector) pressure() {
+	s := q.s
+	if s.Dim != units.Pressure {
+		return
+	}
+	low, rest := q.quantile(0), q.quantile(restShare/2)
+	width, top := q.quantile(restShare)-low, q.quantile(1)
+	gauge := q.pick("absolute pressure", "gauge", "leave")
+	if !s.Absolute {
+		gauge = q.pick("absolute pressure", "leave", "gauge")
+	}
+	switch {
+	case s.Absolute || low > 0.9*units.Bar && low < 1.1*units.Bar && width < 0.1*units.Bar && top > 5*units.Bar:
+		c := Correction{Key: "absolute pressure", Count: len(q.v), Choice: gauge, Choices: []string{"gauge", "leave"}, Text: "is a pressure against vacuum"}
+		if !s.Absolute {
+			c.Text, c.Warns = fmt.Sprintf("rests at %s, as a pressure against vacuum does; say which it is", q.shown(rest)), gauge == "leave"
+		}
+		if gauge == "gauge" {
+			s.shift -= units.AtmosphericPressure
+			c.Done = "the standard atmosphere of 1.01325 bar is taken off"
+		}
+		q.say(c)
+	case rest < -restBar && rest > -3*units.Bar && width < math.Max(0.3*-rest, restBar) && top-rest > 5*units.Bar:
+		choice := q.pick("zero offset", "subtract", "leave")
+		first := slices.IndexFunc(q.v, func(x float64) bool { return x < rest+width })
+		c := q.where(Correction{Key: "zero offset", Count: len(q.v), Warns: true, Choice: choice, Choices: []string{"subtract", "leave"},
+			Text: fmt.Sprintf("rests at %s, below the pressure of the air", q.shown(rest))}, max(first, 0))
+		if choice == "subtract" {
+			s.shift -= rest
+			c.Done = fmt.Sprintf("%s is added to all values", q.shown(-rest))
+		}
+		q.say(c)
+	}
+}
+
+// clipped looks for peaks cut off at one value, of a channel that is alive elsewhere.
+func (q *inspector) clipped() {
+	if q.equal > noisyBelow || len(q.v) < 20 {
+		return
+	}
+	for _, end := range []struct {
+		name string
+		sign float64
+	}{{"highest", 1}, {"lowest", -1}} {
+		limit := math.Inf(-1)
+		for _, x := range q.v {
+			if x == x {
+				limit = math.Max(limit, end.sign*x)
+			}
+		}
+		rows, runs, run, first := 0, 0, 0, -1
+		for i := 0; i <= len(q.v); i++ {
+			if i < len(q.v) && end.sign*q.v[i] == limit {
+				run++
+				continue
+			}
+			if run >= clippedRows {
+				if rows, runs = rows+run, runs+1; first < 0 {
+					first = i - run
+				}
+			}
+			run = 0
+		}
+		if rows == 0 || end.sign*limit == 0 {
+			continue
+		}
+		q.say(q.where(Correction{Key: "clipped " + end.name, Count: rows, Warns: true,
+			Text: fmt.Sprintf("%s (%.2g %% of %d) in %s at its %s value %s: the peaks are cut off there", isRows(rows), 100*float64(rows)/float64(len(q.v)), len(q.v), counted(runs, "place"), end.name, q.shown(end.sign*limit))}, first))
+	}
+}
+
+// stuck looks for long stretches of one value, of a channel that is alive elsewhere.
+func (q *inspector) stuck() {
+	least := max(stuckRows, int(stuckShare*float64(len(q.v))))
+	longest, at, rows, stretches := 0, 0, 0, 0
+	low, high := q.sorted[0], q.sorted[len(q.sorted)-1]
+	for i := 0; i < len(q.v); {
+		k := i + 1
+		for k < len(q.v) && q.v[k] == q.v[i] {
+			k++
+		}
+		if n := k - i; n >= least && q.v[i] != 0 && q.v[i] > low && q.v[i] < high {
+			rows, stretches = rows+n, stretches+1
+			if n > longest {
+				longest, at = n, i
+			}
+		}
+		i = k
+	}
+	if rows == 0 {
+		return
+	}
+	rest := (q.equal*float64(len(q.v)-1) - float64(rows-stretches)) / math.Max(1, float64(len(q.v)-rows))
+	if rest > noisyBelow {
+		return
+	}
+	q.say(q.where(Correction{Key: "stuck", Count: rows, Warns: true,
+		Text: fmt.Sprintf("stands still at %s for %.4g s (%d rows) while it is never still elsewhere", q.shown(q.v[at]), q.Time[at+longest-1]-q.Time[at], longest)}, at))
+}

@@ -1,0 +1,455 @@
+package logger
+
+import (
+	"fmt"
+	"math"
+	"slices"
+)
+
+// timeline makes rising times of stamps as they stand in the file, and the order of rows.
+type timeline struct {
+	*importer
+	t     []float64 // s, by row of the file
+	index []int32   // rows in their order; nil = as in the file
+	dt    float64   // s, median step
+	late  []int32   // rows that came too late
+
+	midnights, summer, resets []jump
+}
+
+// jump is a place at which the clock was set.
+type jump struct {
+	row int
+	by  float64 // s, what was added to all stamps from there on
+}
+
+const (
+	lookAhead = 64 // rows that may overtake another
+	hour      = 3600.0
+	day       = 86400.0
+)
+
+// timeline finds the times of rows.
+func (im *importer) timeline() (*timeline, error) {
+	tl := &timeline{importer: im, t: make([]float64, im.rows)}
+	for i := range tl.t {
+		tl.t[i] = im.raw.at(i)
+	}
+	im.raw = column{}
+	tl.dt = medianStep(tl.t, nil)
+	if !(tl.dt > 0) {
+		return nil, fmt.Errorf("the time stamps never rise; say which column holds them")
+	}
+	tl.walk()
+	if c := tl.choice("clock reset", "append", "refuse"); len(tl.resets) > 0 && c == "refuse" {
+		return nil, fmt.Errorf("line %d: the clock falls back, and the recipe refuses that", im.lineOf(tl.resets[0].row))
+	}
+	tl.sayJumps()
+	tl.sort()
+	if err := tl.groups(); err != nil {
+		return nil, err
+	}
+	return tl, tl.gaps()
+}
+
+// choice returns what the recipe says for a correction, or the first of what may be said.
+func (im *importer) choice(key string, choices ...string) string {
+	if c := im.Recipe.Choices[key]; slices.Contains(choices, c) {
+		return c
+	}
+	return choices[0]
+}
+
+// medianStep returns the median of the steps up, of up to 20,000 of them.
+func medianStep(t []float64, index []int32) float64 {
+	n := len(t)
+	if index != nil {
+		n = len(index)
+	}
+	at := func(i int) float64 {
+		if index != nil {
+			return t[index[i]]
+		}
+		return t[i]
+	}
+	stride := max(1, n/20000)
+	var steps []float64
+	for i := 1; i < n; i += stride {
+		if d := at(i) - at(i-1); d > 0 {
+			steps = append(steps, d)
+		}
+	}
+	if len(steps) == 0 {
+		return 0
+	}
+	slices.Sort(steps)
+	return steps[len(steps)/2]
+}
+
+// walk goes through the stamps and evens out what the clock did.
+func (tl *timeline) walk() {
+	t, off, prev := tl.t, 0.0, tl.t[0]
+	wallClock := tl.Recipe.Time.Form == Clock || tl.Recipe.Time.Form == Dated && !tl.stamps.zoned
+	wraps := tl.Recipe.Time.Form == Clock || tl.stamps.undated > 0
+	for i := 1; i < len(t); i++ {
+		x := t[i] + off
+		if wraps && x-prev < -day/2 {
+			off, x = off+day, x+day
+			tl.midnights = append(tl.midnights, jump{i, day})
+		}
+		switch d := x - prev; {
+		case wallClock && tl.hourOff(d, -hour, prev) && tl.stays(i, off, prev):
+			off, x = off+hour, x+hour
+			tl.summer = append(tl.summer, jump{i, hour})
+		case wallClock && tl.hourOff(d, hour, prev) && tl.Recipe.Time.Form == Dated:
+			off, x = off-hour, x-hour
+			tl.summer = append(tl.summer, jump{i, -hour})
+		case d < 0 && tl.overtaken(i, off, prev, x):
+			tl.late = append(tl.late, int32(i))
+			t[i] = x
+			continue
+		case d < 0 || d > 30*day && d > 100*(prev-t[0]):
+			by := prev + tl.dt - x
+			off, x = off+by, x+by
+			tl.resets = append(tl.resets, jump{i, by})
+		}
+		t[i], prev = x, x
+	}
+}
+
+// hourOff reports whether a step is one row and an hour more or less, at a full hour of
+// the night, as where summer time begins or ends.
+func (tl *timeline) hourOff(d, by, prev float64) bool {
+	tol := math.Max(2*tl.dt, 1)
+	if tl.choice("summer time", "even out", "leave") == "leave" || tl.dt > 600 || math.Abs(d-by-tl.dt) > tol {
+		return false
+	}
+	ofDay := math.Mod(float64(tl.ns0%dayNS)/1e9+prev-tl.t[0], day)
+	into := math.Mod(ofDay+tl.dt+tol, hour)
+	return into <= 2*tol && ofDay < 5*hour
+}
+
+// stays reports whether the rows after i stay behind prev: a single one would be late only.
+func (tl *timeline) stays(i int, off, prev float64) bool {
+	for k := i + 1; k < min(i+4, len(tl.t)); k++ {
+		if tl.t[k]+off > prev {
+			return false
+		}
+	}
+	return true
+}
+
+// overtaken reports whether row i at x belongs before rows that came earlier: rows soon
+// go on after prev, and its time is one that is missing, or it is one of a few only.
+func (tl *timeline) overtaken(i int, off, prev, x float64) bool {
+	behind := 0
+	for k := i; k < len(tl.t) && tl.t[k]+off <= prev; k++ {
+		if behind++; behind > lookAhead {
+			return false
+		}
+	}
+	if i+behind == len(tl.t) && behind > 3 || i+behind < len(tl.t) && tl.t[i+behind]+off > prev+float64(lookAhead)*tl.dt {
+		return false
+	}
+	if behind <= 3 {
+		return x >= tl.t[0]-float64(lookAhead)*tl.dt
+	}
+	for k := i - 1; k >= max(0, i-4*lookAhead); k-- {
+		if math.Abs(tl.t[k]-x) < 0.4*tl.dt {
+			return false
+		}
+	}
+	return true
+}
+
+func (tl *timeline) sayJumps() {
+	add := func(key string, js []jump, warns bool, text, done, choice string, choices ...string) {
+		if len(js) > 0 {
+			tl.Corrections = append(tl.Corrections, Correction{Key: key, Count: len(js), Line: tl.lineOf(js[0].row), T: tl.t[js[0].row], Text: text, Done: done, Choice: choice, Choices: choices, Warns: warns})
+		}
+	}
+	times := func(n int) string {
+		if n == 1 {
+			return "once"
+		}
+		return fmt.Sprintf("%d times", n)
+	}
+	add("midnight", tl.midnights, false, fmt.Sprintf("the clock passes midnight %s", times(len(tl.midnights))), "a day is added", "")
+	if len(tl.summer) > 0 {
+		how := "an hour is missing"
+		if tl.summer[0].by > 0 {
+			how = "an hour stands twice"
+		}
+		add("summer time", tl.summer, false, how+", as where summer time begins or ends", "evened out", "even out", "even out", "leave")
+	}
+	if len(tl.resets) > 0 {
+		r := tl.resets[0]
+		add("clock reset", tl.resets, true, fmt.Sprintf("the clock jumps %s, the first time by %.6g s", times(len(tl.resets)), -(r.by)+tl.dt),
+			"what follows is put one step after what was before; how long the pause was is not known", "append", "append", "refuse")
+	}
+}
+
+// sort puts late rows where they belong, or drops them.
+func (tl *timeline) sort() {
+	if len(tl.late) == 0 {
+		return
+	}
+	first := int(tl.late[0])
+	c := Correction{Key: "out of order", Count: len(tl.late), Line: tl.lineOf(first), T: tl.t[first], Text: counted(len(tl.late), "row") + " out of order",
+		Choices: []string{"sort", "drop"}, Choice: tl.choice("out of order", "sort", "drop"), Done: "sorted by time"}
+	tl.index = make([]int32, 0, len(tl.t))
+	k := 0
+	for i := range tl.t {
+		if k < len(tl.late) && tl.late[k] == int32(i) {
+			k++
+			if c.Choice == "drop" {
+				continue
+			}
+		}
+		tl.index = append(tl.index, int32(i))
+		for j := len(tl.index) - 1; j > 0 && tl.t[tl.index[j-1]] > tl.t[tl.index[j]]; j-- {
+			tl.index[j-1], tl.index[j] = tl.index[j], tl.index[j-1]
+		}
+	}
+	if c.Choice == "drop" {
+		c.Done = "left out"
+	}
+	tl.Corrections = append(tl.Corrections, c)
+}
+
+func (tl *timeline) len() int {
+	if tl.index != nil {
+		return len(tl.index)
+	}
+	return len(tl.t)
+}
+
+func (tl *timeline) row(i int) int {
+	if tl.index != nil {
+		return int(tl.index[i])
+	}
+	return i
+}
+
+func (tl *timeline) at(i int) float64 { return tl.t[tl.row(i)] }
+
+// group returns the end of the run of rows with the stamp of row i.
+func (tl *timeline) group(i int) int {
+	x := tl.at(i)
+	for i++; i < tl.len() && tl.at(i) == x; i++ {
+	}
+	return i
+}
+
+// groups deals with rows that share a stamp.
+func (tl *timeline) groups() error {
+	shared, n := 0, tl.len()
+	for i := 0; i < n; {
+		end := tl.group(i)
+		if end-i > 1 {
+			shared += end - i
+		}
+		i = end
+	}
+	switch {
+	case shared == 0:
+		return nil
+	case 2*shared > n && tl.choice("one stamp", "spread", "keep first") == "spread":
+		tl.spread()
+		return nil
+	}
+	return tl.doubled()
+}
+
+// alike reports whether two rows have the same values.
+func (tl *timeline) alike(a, b int) bool {
+	same := func(c *column) bool {
+		x, y := c.at(a), c.at(b)
+		return x == y || x != x && y != y
+	}
+	if tl.counterAt >= 0 && !same(&tl.count) {
+		return false
+	}
+	for _, s := range tl.Series {
+		if !same(&s.raw) {
+			return false
+		}
+	}
+	return true
+}
+
+// doubled drops rows that stand twice; of rows with one stamp and other values the first is kept, or the last as well, as a step.
+func (tl *timeline) doubled() error {
+	var twice, other []int
+	stepped := "keep first"
+	if tl.Recipe.Time.Form == Elapsed && len(tl.t) < 5000 && !tl.regular() {
+		stepped = "step" // a table of points, where two rows at one time are a step
+	}
+	alternatives := []string{"keep first", "step"}
+	if stepped == "step" {
+		alternatives = []string{"step", "keep first"}
+	}
+	choice := tl.choice("one stamp", alternatives...)
+	index := make([]int32, 0, tl.len())
+	for i := 0; i < tl.len(); {
+		end := tl.group(i)
+		index = append(index, int32(tl.row(i)))
+		last := -1
+		for k := i + 1; k < end; k++ {
+			if tl.alike(tl.row(k), tl.row(k-1)) || tl.alike(tl.row(k), tl.row(i)) {
+				twice = append(twice, tl.row(k))
+			} else {
+				other = append(other, tl.row(k))
+				last = tl.row(k)
+			}
+		}
+		if last >= 0 && choice == "step" {
+			index = append(index, int32(last))
+		}
+		i = end
+	}
+	tl.index = index
+	if len(twice) > 0 {
+		if tl.choice("doubled rows", "drop", "refuse") == "refuse" {
+			return fmt.Errorf("line %d: the row stands twice, and the recipe refuses that", tl.lineOf(twice[0]))
+		}
+		tl.Corrections = append(tl.Corrections, Correction{Key: "doubled rows", Count: len(twice), Line: tl.lineOf(twice[0]), T: tl.t[twice[0]],
+			Text: counted(len(twice), "row") + " with the stamp and the values of another", Done: "left out", Choice: "drop", Choices: []string{"drop", "refuse"}})
+	}
+	if len(other) > 0 {
+		done := map[string]string{"keep first": "the first of each stamp is kept", "step": "the first and the last of each stamp are kept, as a step"}[choice]
+		tl.Corrections = append(tl.Corrections, Correction{Key: "one stamp", Count: len(other), Line: tl.lineOf(other[0]), T: tl.t[other[0]], Warns: choice == "keep first",
+			Text: counted(len(other), "row") + " with the stamp of another row and other values", Done: done, Choice: choice, Choices: alternatives})
+	}
+	return nil
+}
+
+// regular reports whether most steps are near the median one.
+func (tl *timeline) regular() bool {
+	near, all := 0, 0
+	for i := 1; i < tl.len(); i++ {
+		if d := tl.at(i) - tl.at(i-1); d > 0 {
+			all++
+			if math.Abs(d-tl.dt) <= 0.2*tl.dt {
+				near++
+			}
+		}
+	}
+	return 10*near >= 8*all
+}
+
+// spread sets rows that share a stamp evenly into its interval: the clock of the file is
+// coarser than its rows.
+func (tl *timeline) spread() {
+	var starts []int
+	for i := 0; i < tl.len(); i = tl.group(i) {
+		starts = append(starts, i)
+	}
+	starts = append(starts, tl.len())
+	sizes := make([]int, 0, len(starts))
+	for k := 0; k+1 < len(starts); k++ {
+		sizes = append(sizes, starts[k+1]-starts[k])
+	}
+	sorted := slices.Clone(sizes)
+	slices.Sort(sorted)
+	typical := sorted[len(sorted)/2]
+	res := tl.dt // stamps rise by this
+	h := res / float64(typical)
+	stamp := make([]float64, len(sizes))
+	for k := range sizes {
+		stamp[k] = tl.at(starts[k])
+	}
+	for k, m := range sizes {
+		from, step := stamp[k], h
+		if k+1 < len(sizes) {
+			if d := stamp[k+1] - stamp[k]; d < 1.5*res && (k > 0 || m >= typical) {
+				step = d / float64(m)
+			} else if k == 0 && m < typical {
+				from = stamp[1] - float64(m)*h
+			}
+		}
+		if float64(m)*step > res*1.5 {
+			step = res / float64(m)
+		}
+		for j := range m {
+			tl.t[tl.row(starts[k]+j)] = from + float64(j)*step
+		}
+	}
+	tl.dt = h
+	tl.Corrections = append(tl.Corrections, Correction{Key: "one stamp", Count: tl.len() - len(sizes), Line: tl.lineOf(tl.row(0)), T: tl.at(0), Choice: "spread", Choices: []string{"spread", "keep first"},
+		Text: fmt.Sprintf("stamps come every %.6g s only, about %d rows share one", res, typical), Done: "rows are spread evenly over their interval"})
+}
+
+// gaps tells of missing rows and of uneven steps, and keeps the times.
+func (tl *timeline) gaps() error {
+	n := tl.len()
+	if n < 2 {
+		return fmt.Errorf("one row is left; a recording has at least two")
+	}
+	times := tl.t
+	if tl.index != nil {
+		times = make([]float64, n)
+		for i := range times {
+			times[i] = tl.at(i)
+		}
+	}
+	tl.Time, tl.Interval = times, medianStep(times, nil)
+	tl.dt = tl.Interval
+	regular := tl.regular()
+	gaps, missing, longest, at, first := 0, 0, 0.0, 0, 0
+	least, most := math.Inf(1), 0.0
+	for i := 1; i < n; i++ {
+		d := times[i] - times[i-1]
+		least, most = math.Min(least, d), math.Max(most, d)
+		limit := 1.5
+		if !regular {
+			limit = 10
+		}
+		if d > limit*tl.Interval {
+			if gaps++; gaps == 1 {
+				first = i
+			}
+			missing += int(math.Round(d/tl.Interval)) - 1
+			if d > longest {
+				longest, at = d, i
+			}
+		}
+	}
+	if !regular {
+		tl.Corrections = append(tl.Corrections, Correction{Key: "uneven steps", Text: fmt.Sprintf("rows follow each other unevenly, by %.4g s to %.4g s, half of them within %.4g s", least, most, tl.Interval)})
+	}
+	if gaps > 0 {
+		if tl.choice("missing rows", "interpolate", "refuse") == "refuse" {
+			return fmt.Errorf("line %d: rows are missing, and the recipe refuses that", tl.lineOf(tl.row(first)))
+		}
+		tl.Corrections = append(tl.Corrections, Correction{Key: "missing rows", Count: missing, Line: tl.lineOf(tl.row(first)), T: times[first], Warns: longest > 10*tl.Interval,
+			Text: fmt.Sprintf("about %s missing in %s, the longest of %.4g s at %.6g s", counted(missing, "row"), counted(gaps, "gap"), longest, times[at]),
+			Done: "taken as straight lines between the rows around", Choice: "interpolate", Choices: []string{"interpolate", "refuse"}})
+	}
+	tl.counted()
+	return nil
+}
+
+// counted compares with the counter of records.
+func (tl *timeline) counted() {
+	if tl.counterAt < 0 {
+		return
+	}
+	missing, first := 0, -1
+	last := math.NaN()
+	for i := range tl.len() {
+		c := tl.count.at(tl.row(i))
+		if d := c - last; d > 1 && d < 1e9 {
+			if missing += int(d) - 1; first < 0 {
+				first = i
+			}
+		}
+		if c == c {
+			last = c
+		}
+	}
+	if first >= 0 {
+		tl.Corrections = append(tl.Corrections, Correction{Key: "record counter", Count: missing, Line: tl.lineOf(tl.row(first)), T: tl.Time[first], Warns: true,
+			Text: fmt.Sprintf("by the record counter %q, %s missing", tl.Recipe.Time.Counter, counted(missing, "row"))})
+	}
+}
