@@ -143,3 +143,28 @@ func curve(x, y []float64) (interp.Predictor, error) {
 
 // within is a temperature brought into the range of the load.
 func (c *curves) within(theta float64) float64 { return max(c.low, min(c.high, theta)) }
+
+// HeatAt returns the heat into the oil [W] at a temperature [K].
+func (l *Load) HeatAt(theta float64) (float64, error) {
+	return l.at(theta, func(p Point) float64 { return p.Heat })
+}
+
+// DrawnAt returns the power drawn from the supply [W] at a temperature [K].
+func (l *Load) DrawnAt(theta float64) (float64, error) {
+	return l.at(theta, func(p Point) float64 { return p.Drawn })
+}
+
+func (l *Load) at(theta float64, of func(Point) float64) (float64, error) {
+	x, y := make([]float64, len(l.At)), make([]float64, len(l.At))
+	for i, p := range l.At {
+		x[i], y[i] = p.Theta, of(p)
+	}
+	if len(x) == 0 {
+		return 0, fmt.Errorf("thermal: load %q is known at no temperature", l.Name)
+	}
+	c, err := curve(x, y)
+	if err != nil {
+		return 0, err
+	}
+	return c.Predict(max(x[0], min(x[len(x)-1], theta))), nil
+}

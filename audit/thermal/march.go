@@ -69,6 +69,7 @@ type Course struct {
 	Air           []float64 // K
 	Energies
 	On  float64 // s in which the machine ran
+	Ran float64 // K, mean oil temperature while it ran; NaN when it did not
 	End State
 }
 
@@ -192,6 +193,7 @@ func (p *Plant) March(from, to float64, start State, until func(t float64, s Sta
 			m.c.On += m.t - begun
 		}
 	}
+	m.c.Ran = m.sum / m.c.On
 	y := &m.y
 	m.c.End = State{y[oil], y[steel]}
 	m.c.Energies = Energies{Heat: y[heatIn], Walls: y[toWalls], Cooled: y[toCooler], Drawn: y[drawn], Fan: y[fan], Loop: y[loop],
@@ -219,6 +221,7 @@ type march struct {
 	t     float64
 	y     vector
 	h     float64
+	sum   float64 // K·s while the machine ran
 	steps int
 	until func(float64, State) bool
 	ended bool
@@ -247,6 +250,9 @@ func (m *march) stretch(end float64, c *curves) error {
 		}
 		y, off := m.step(h, c, &k)
 		if off <= 1 {
+			if c != nil {
+				m.sum += h * (m.y[oil] + y[oil]) / 2
+			}
 			m.t, m.y = m.t+h, y
 			if last {
 				m.t = end
