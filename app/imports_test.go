@@ -32,7 +32,7 @@ var arrows = map[string]arrow{
 	"samples":           {ours: []string{"audit", "circuit"}}, // tests only: the samples are data
 	"audit/pen":         {ours: []string{"assets"}, outside: []string{"github.com/jung-kurt/gofpdf", "golang.org/x/image"}},
 	"audit/figures":     {ours: []string{"audit", "audit/thermal", "circuit", "audit/pen", "machines/units", "circuit/..."}},
-	"audit/pdf":         {ours: []string{"audit", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/..."}, outside: []string{"github.com/jung-kurt/gofpdf"}},
+	"audit/pdf":         {ours: []string{"audit", "audit/thermal", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/..."}, outside: []string{"github.com/jung-kurt/gofpdf"}},
 	"audit/thermal":     {outside: []string{"gonum.org/v1/gonum"}},
 	"audit":             {ours: []string{"audit/thermal", "circuit", "circuit/...", "machines", "machines/units"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
 	"app/document":      {ours: []string{"audit", "audit/...", "circuit", "circuit/...", "machines", "machines/units", "samples"}},

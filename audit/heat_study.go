@@ -238,7 +238,7 @@ func (h *HeatStudy) leadsTo() ([]float64, error) {
 		return nil, err
 	}
 	top, _ := week.Highest()
-	return []float64{week.Ran, top, h.Wanted}, nil
+	return []float64{week.Ran, top}, nil
 }
 
 // With returns the plant with other loads and another mean of the air.

@@ -14,7 +14,7 @@ import (
 
 // Of the table of heat by temperature.
 const (
-	coarseSteps = 150  // time steps of a duty that is solved again at another temperature
+	coarseSteps = 100  // time steps of a duty that is solved again at another temperature
 	hottest     = 90.0 // °C, up to which a circuit is solved
 	apart       = 2.0  // K: nearer temperatures are not solved again
 	thickest    = 2500e-6
@@ -67,7 +67,7 @@ func (t *heatTable) wanted(coldest float64) []float64 {
 	var out []float64
 	for _, theta := range []float64{coldest, units.ZeroCelsius + 20, units.ZeroCelsius + 40, units.ZeroCelsius + 65, units.ZeroCelsius + hottest} {
 		c, err := t.s.File.ConditionsAt(theta)
-		if theta < coldest || err != nil || c.Viscosity/c.Density > thickest || math.Abs(theta-t.s.Oil) < 6 {
+		if theta < coldest || err != nil || c.Viscosity/c.Density > thickest || math.Abs(theta-t.s.Oil) < 12 {
 			continue
 		}
 		out = append(out, theta)

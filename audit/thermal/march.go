@@ -160,9 +160,9 @@ var (
 )
 
 const (
-	stepError = 1e-5  // K that a step may be off by: after a week of a thousand steps still hundredths
-	firstStep = 10.0  // s
-	longest   = 900.0 // s: for smooth curves, and so that no swing of the day is stepped over
+	stepError = 1e-5   // K that a step may be off by: after a week of a thousand steps still hundredths
+	firstStep = 10.0   // s
+	longest   = 1800.0 // s: for smooth curves, and so that no swing of the day is stepped over
 	mostSteps = 200000
 )
 
