@@ -24,6 +24,7 @@ type auditCall struct {
 	files          []string
 	set            []string
 	json, csv, pdf string
+	request        string
 	system         units.System
 }
 
@@ -41,6 +42,7 @@ func parseAudit(args []string, errs io.Writer) (auditCall, error) {
 	f.StringVar(&c.json, "json", "", "write the results as JSON to `OUT`; - writes nothing but them to standard output")
 	f.StringVar(&c.csv, "csv", "", "write every time step as CSV into the folder `DIR`")
 	f.StringVar(&c.pdf, "pdf", "", "write the report to `OUT`; with several audit files a folder")
+	f.StringVar(&c.request, "request", "", "write the cooler request sheet to `OUT`, a .pdf or a .csv; with several audit files a folder")
 	system := f.String("units", "metric", "units of the text and the report: `metric`, us or si")
 	var err error
 	if c.files, err = parseMixed(f, args); err != nil {
@@ -143,6 +145,12 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 		}
 		fmt.Fprintf(text, "\nReport written to %s\n", out)
 	}
+	if c.request != "" {
+		if err := c.writeRequest(path, s, text); err != nil {
+			fmt.Fprintln(errs, "barlitre audit:", err)
+			return nil, exitUnreadable
+		}
+	}
 	return s.Result(), exitOf(s, path, errs)
 }
 
@@ -175,11 +183,29 @@ func baseName(path string) string {
 	return strings.TrimSuffix(filepath.Base(path), filepath.Ext(path))
 }
 
-func (c *auditCall) pdfPath(path string) string {
-	if info, err := os.Stat(c.pdf); c.several() || (err == nil && info.IsDir()) {
-		return filepath.Join(c.pdf, baseName(path)+".pdf")
+func (c *auditCall) pdfPath(path string) string { return c.outPath(c.pdf, path, ".pdf") }
+
+// outPath is where an output of an audit file goes: the name that was asked for, or a file of its own in a folder.
+func (c *auditCall) outPath(asked, path, ending string) string {
+	if info, err := os.Stat(asked); c.several() || (err == nil && info.IsDir()) {
+		return filepath.Join(asked, baseName(path)+ending)
 	}
-	return c.pdf
+	return asked
+}
+
+// writeRequest writes the cooler request sheet, as a page or as a table by the ending of its name.
+func (c *auditCall) writeRequest(path string, s *audit.Solution, text io.Writer) error {
+	out := c.outPath(c.request, path, "-cooler.pdf")
+	err := writeWhole(out, func(w io.Writer) error {
+		if strings.EqualFold(filepath.Ext(out), ".csv") {
+			return audit.WriteRequestCSV(w, s.Requests(c.system))
+		}
+		return pdf.WriteRequest(w, s, pdf.Options{System: c.system, Date: time.Now()})
+	})
+	if err == nil {
+		fmt.Fprintf(text, "\nCooler request sheet written to %s\n", out)
+	}
+	return err
 }
 
 // csvFiles opens the tables of one audit file, in a folder of its own where there are several.

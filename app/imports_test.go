@@ -35,11 +35,12 @@ var arrows = map[string]arrow{
 	"circuit":                    {ours: []string{"circuit/balance", "circuit/duty", "circuit/drawing", "machines", "machines/units"}, outside: []string{"gopkg.in/yaml.v3"}},
 	"samples":                    {ours: []string{"audit", "circuit"}}, // tests only: the samples are data
 	"audit/pen":                  {ours: []string{"assets"}, outside: []string{"github.com/jung-kurt/gofpdf", "golang.org/x/image"}},
-	"audit/figures":              {ours: []string{"audit", "circuit", "audit/pen", "machines/units", "circuit/..."}},
-	"audit/pdf":                  {ours: []string{"audit", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/..."}, outside: []string{"github.com/jung-kurt/gofpdf"}},
-	"audit":                      {ours: []string{"circuit", "circuit/...", "machines", "machines/units"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
+	"audit/figures":              {ours: []string{"audit", "circuit", "audit/pen", "machines/units", "circuit/...", "audit/thermal"}},
+	"audit/pdf":                  {ours: []string{"audit", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/...", "audit/thermal"}, outside: []string{"github.com/jung-kurt/gofpdf"}},
+	"audit":                      {ours: []string{"circuit", "circuit/...", "machines", "machines/units", "audit/thermal"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
 	"app/document":               {ours: []string{"audit", "audit/...", "circuit", "circuit/...", "machines", "machines/units", "samples"}},
 	"app":                        {ours: []string{"..."}, outside: []string{"fyne.io/fyne/v2"}},
+	"audit/thermal":              {outside: []string{"gonum.org/v1/gonum"}},
 }
 
 // forbidden are packages and calls that would make a result hang on the moment or the machine.

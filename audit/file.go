@@ -37,6 +37,7 @@ const Format = "barlitre/1"
 //	site: {name, customer, author, date, note: text, currency: EUR}
 //	oil: ...                      needed, see below
 //	air: {temperature: 30 C}      around the tank
+//	heat: {tank_volume: 400 L, cooler: air, cooler_rate: 0.4 kW/K}   optional: tank, cooler, air and shifts
 //	energy: {price: 0.18 EUR/kWh, co2: 0.35 kg/kWh, co2_year: 2024,
 //	         co2_basis: location | market, credit_returned: no,
 //	         fuel_price: 1.6 EUR/L, fuel_co2: 2.66 kg/L,
@@ -78,6 +79,25 @@ const Format = "barlitre/1"
 // Where both a viscosity and a grade are given, the viscosity and the density
 // hold at the working temperature, and the grade says how they change with it.
 //
+// The section heat says what stores and takes the heat, with the keys of HeatKeys; without it no oil temperature is worked out. A
+// circuit may have a heat of its own, which says what is different there:
+//
+//	heat:
+//	  tank_volume: {value: 400 L, origin: name plate}
+//	  air_movement: still | ordinary | forced
+//	  cooler: none | air | water
+//	  cooler_place: return | case drain | flushing | off-line
+//	  cooler_rate: 0.4 kW/K          between entering oil and entering air or water
+//	  cooler_flow: 60 L/min          at which that holds; or, in place of both,
+//	  cooler_points: 20 L/min 0.2 kW/K, 60 L/min 0.4 kW/K
+//	  thermostat_opens: 40 C
+//	  fan_power: 0.55 kW             booked with what the machine draws, of every circuit
+//	  fan: with the machine | by thermostat
+//	  loop_flow: 30 L/min            of an off-line loop
+//	  hot_day: 38 C                  mean air temperature
+//	  shift_hours: 16 h              a day, from shift_start on, shift_days a week
+//	  wanted: 55 C                   oil temperature that the cooler is sized for
+//
 // Duties and circuits are lists:
 //
 //	duties:
@@ -102,6 +122,7 @@ const Format = "barlitre/1"
 //	  lines: [P1.P - V1.P - RV1.P]
 //	  notes: [{text: "label not legible", at: [30, 4]}]
 //	  groups: [{label: Power unit, blocks: [M1, P1, RV1]}]
+//	  heat: {cooler_rate: 0.1 kW/K}
 //
 // In place of points may stand "file: press.csv", a table beside the audit file (or
 // in a folder below it) whose head has the same names with their units: see
@@ -136,6 +157,8 @@ type File struct {
 
 	Air    circuit.Value // K, around the tank
 	HasAir bool
+
+	Heat HeatSection // of tank, cooler and air, of all circuits
 
 	Price          circuit.Value // money per J
 	HasPrice       bool
@@ -202,6 +225,7 @@ type CircuitEntry struct {
 	*circuit.Circuit
 	Role   Role
 	Cost   Cost
+	Heat   HeatSection // where it differs from that of all circuits
 	Notes  []SheetNote
 	Groups []SheetGroup
 }

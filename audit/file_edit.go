@@ -97,6 +97,9 @@ var bandDim = map[string]units.Dim{
 func (f *File) moveBand(src *source, p place, quantity string) ([]splice, error) {
 	n := child(p.mapping, p.key)
 	dim, known := bandDim[p.key]
+	if k := HeatKeyNamed(p.key); p.kind == nil && k != nil {
+		dim, known = k.Dim, true
+	}
 	if p.kind != nil && p.kind.Param(p.key) != nil {
 		dim, known = p.kind.Param(p.key).Dim, true
 	}

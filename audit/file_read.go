@@ -19,7 +19,7 @@ func (r *reader) top(root *yaml.Node) bool {
 		return false
 	}
 	var s scope
-	f := r.fields(s, root, "", "format", "title", "site", "oil", "air", "energy", "axes", "duties", "circuits")
+	f := r.fields(s, root, "", "format", "title", "site", "oil", "air", "heat", "energy", "axes", "duties", "circuits")
 	r.misspelt = len(r.found) > 0
 	if !r.format(f["format"].value, root) {
 		return false
@@ -29,6 +29,7 @@ func (r *reader) top(root *yaml.Node) bool {
 	r.energy(f["energy"].value)
 	r.oil(f["oil"].value, root)
 	r.air(f["air"].value)
+	r.file.Heat = r.heat(scope{}, f["heat"].value)
 	r.axisNames(f["axes"].value)
 	r.blockIDs(f["circuits"].value)
 	r.duties(f["duties"].value, root)

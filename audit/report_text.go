@@ -5,6 +5,7 @@ import (
 	"slices"
 	"strings"
 
+	"barlitre/audit/thermal"
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
@@ -129,7 +130,7 @@ func (s *Solution) coolerAssumption(p printer) string {
 	if _, err := CoolerRate(0, s.Oil, s.Air); err != nil {
 		return "Cooler: " + err.Error() + "."
 	}
-	h := WallCoefficients[1]
+	h := thermal.OrdinaryAir
 	return fmt.Sprintf("Coolers are named for oil entering at %s and air at %s, by the mean heat of a cycle. Walls of tank and pipes are not credited: "+
 		"a square metre of free tank wall would take about %s (at %s W/(m²·K), trade literature).",
 		p.degrees(s.Oil), p.degrees(s.Air), p.power(WallHeat(h, 1, s.Oil-s.Air)), units.Number(h, 2))

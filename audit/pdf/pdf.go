@@ -28,6 +28,7 @@ const (
 	Machines   Section = "Machines and drives"
 	Duty       Section = "Duty and course over time"
 	Heat       Section = "Heat and cooler"
+	Request    Section = "Cooler request sheet"
 	Money      Section = "Money"
 	Parameters Section = "Values and where they come from"
 	Findings   Section = "Findings"
@@ -39,7 +40,7 @@ const cautionPages Section = "Cautions and limits of use"
 
 // Sections lists all sections in the order of printing; the slice is the caller's.
 func Sections() []Section {
-	return []Section{Decision, Basis, Circuits, Energy, Machines, Duty, Heat, Money, Parameters, Findings, Method}
+	return []Section{Decision, Basis, Circuits, Energy, Machines, Duty, Heat, Request, Money, Parameters, Findings, Method}
 }
 
 // Options of Write; only Date is needed.
@@ -187,11 +188,14 @@ func (l *layout) print(to paper) {
 		Section
 		draw func()
 	}{
-		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat},
+		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat}, {Request, l.requests},
 		{Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {Method, l.method},
 	} {
-		if slices.Contains(l.without, part.Section) {
+		if slices.Contains(l.without, part.Section) || part.Section == Request && !l.asks() {
 			continue
+		}
+		if part.Section == Request && !l.fresh() {
+			l.newPage() // the sheets go to someone else
 		}
 		if part.Section != Decision {
 			l.heading(1, string(part.Section), l.follow(part.Section))
