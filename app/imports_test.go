@@ -32,8 +32,9 @@ var arrows = map[string]arrow{
 	"samples":           {ours: []string{"audit", "circuit"}}, // tests only: the samples are data
 	"audit/pen":         {ours: []string{"assets"}, outside: []string{"github.com/jung-kurt/gofpdf", "golang.org/x/image"}},
 	"audit/figures":     {ours: []string{"audit", "circuit", "audit/pen", "machines/units", "circuit/..."}},
-	"audit/fixfirst":    {ours: []string{"audit", "circuit", "machines", "machines/units"}},
-	"audit/sitecheck":   {ours: []string{"audit", "audit/fixfirst", "circuit", "machines/units"}},
+	"audit/look":        {ours: []string{"audit", "circuit", "machines/units"}},
+	"audit/fixfirst":    {ours: []string{"audit", "audit/look", "circuit", "machines", "machines/units"}},
+	"audit/sitecheck":   {ours: []string{"audit", "audit/fixfirst", "audit/look", "circuit", "machines/units"}},
 	"audit/pdf":         {ours: []string{"audit", "circuit", "audit/fixfirst", "audit/sitecheck", "audit/pen", "audit/figures", "machines/units", "circuit/..."}, outside: []string{"github.com/jung-kurt/gofpdf"}},
 	"audit":             {ours: []string{"circuit", "circuit/...", "machines", "machines/units"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
 	"app/document":      {ours: []string{"audit", "audit/...", "circuit", "circuit/...", "machines", "machines/units", "samples"}},

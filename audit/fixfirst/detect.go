@@ -1,7 +1,10 @@
 package fixfirst
 
 import (
+	"slices"
+
 	"barlitre/audit"
+	"barlitre/machines/units"
 )
 
 // rules are the detectors, each of which says what it finds in a solved circuit.
@@ -11,16 +14,17 @@ var rules = []func(*plant) []*Finding{
 	oilTemperature, oilGrade,
 }
 
-// Detect lists what is wrong with a solved circuit, with evidence, in the order of the rules; nothing where it was not solved.
-func Detect(s *audit.Solution, run *audit.CircuitRun) []*Finding {
+// Detect lists what is wrong with a solved circuit, with evidence in a family of units, in the order of the rules; nothing
+// where it was not solved.
+func Detect(s *audit.Solution, run *audit.CircuitRun, system units.System) []*Finding {
 	if run.Year == nil || !run.Year.Complete || len(run.Year.Duties) == 0 {
 		return nil
 	}
-	p := newPlant(s, run)
+	p := newPlant(s, run, system)
 	var out []*Finding
 	for _, rule := range rules {
 		for _, f := range rule(p) {
-			if !p.explained(out, f) {
+			if !explained(out, f) {
 				out = append(out, f)
 			}
 		}
@@ -28,18 +32,13 @@ func Detect(s *audit.Solution, run *audit.CircuitRun) []*Finding {
 	return out
 }
 
-// explained reports whether an earlier finding is the cause of a later one: where a relief valve stands at the
-// compensator it is open in work as well, and where the motor idles over a relief valve it stands by too high.
-func (p *plant) explained(before []*Finding, f *Finding) bool {
+// explained reports whether an earlier finding is the cause of a later one: where a relief valve stands at the compensator
+// it is open in work as well, and where the margin is turned up the pump stands by too high.
+func explained(before []*Finding, f *Finding) bool {
 	for _, b := range before {
-		for _, c := range b.causes() {
-			if c == f.key() {
-				return true
-			}
+		if slices.Contains(b.because, f.key()) {
+			return true
 		}
 	}
 	return false
 }
-
-// causes lists the keys of findings that follow from this one.
-func (f *Finding) causes() []string { return f.because }

@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"barlitre/audit"
+	"barlitre/audit/look"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -24,7 +25,7 @@ func isLower(f *audit.File, e Edit) bool {
 		return false
 	}
 	want, _, err := units.Parse(e.Value, p.Dim)
-	return err == nil && value(b, key) <= want
+	return err == nil && look.Value(b, key) <= want
 }
 
 // barText writes a pressure [Pa] for the file, to whole bars, rounded down.

@@ -35,7 +35,11 @@ func (e Effort) String() string {
 }
 
 // Quantity is one piece of evidence: what was found and what it is compared with.
-type Quantity struct{ Name, Found, Limit string }
+type Quantity struct {
+	Name  string `json:"name"`
+	Found string `json:"found"`
+	Limit string `json:"limit"`
+}
 
 // Finding is one thing to put right.
 type Finding struct {

@@ -7,6 +7,7 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
+	"barlitre/machines/units"
 	"barlitre/samples"
 )
 
@@ -65,7 +66,7 @@ func solve(t *testing.T, f *audit.File) *audit.Solution {
 // faults lists what is found that is no habit.
 func faults(s *audit.Solution) []*fixfirst.Finding {
 	var out []*fixfirst.Finding
-	for _, fs := range fixfirst.Found(s) {
+	for _, fs := range fixfirst.Found(s, units.Metric) {
 		for _, f := range fs {
 			if !f.Habit {
 				out = append(out, f)

@@ -16,9 +16,9 @@ import (
 // Step is a finding with its price.
 type Step struct {
 	*Finding
-	Cure     Cure   // that was priced
-	Alone    Saving // cured alone
-	InOrder  Saving // cured after those above it
+	Cure     Cure    // that was priced
+	Alone    Saving  // cured alone
+	InOrder  Saving  // cured after those above it
 	Regained float64 // s a cycle by which axes fell short, and do no more when it is cured alone
 	Unpriced string  // why there is no price, "" where there is one
 }
@@ -59,15 +59,16 @@ type Split struct {
 // Options of Climb; the zero value is good.
 type Options struct {
 	Cache    *Cache
+	System   units.System
 	Progress func(done, total int) // from any goroutine, one call at a time
 }
 
 // Found reports what Detect finds in the circuits as found of a solution, by circuit.
-func Found(s *audit.Solution) map[string][]*Finding {
+func Found(s *audit.Solution, system units.System) map[string][]*Finding {
 	out := map[string][]*Finding{}
 	for _, run := range s.Circuits {
 		if !run.Proposal {
-			out[run.Circuit.Name] = Detect(s, run)
+			out[run.Circuit.Name] = Detect(s, run, system)
 		}
 	}
 	return out
@@ -100,7 +101,7 @@ func Climb(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt Op
 	}
 	base := outcomeOf(run)
 	l := &Ladder{Circuit: run.Circuit.Name, Currency: s.Tariff.Currency, AsFound: yearOf(base), Class: map[Class]Saving{}, CuredFile: s.File}
-	for _, f := range Detect(s, run) {
+	for _, f := range Detect(s, run, opt.System) {
 		l.Steps = append(l.Steps, &Step{Finding: f, Alone: unknown, InOrder: unknown})
 	}
 	if math.IsNaN(base.money) {
@@ -249,9 +250,9 @@ func (x *Step) Note() string {
 	case x.Unpriced != "":
 		return "No price: " + x.Unpriced + "."
 	case x.Regained > 1e-2 && x.Alone.Energy < 0:
-		return fmt.Sprintf("It costs energy, for the machine then makes its motions in time again: %s a cycle that axes now fall short.", shown(x.Regained, units.Time))
+		return fmt.Sprintf("It costs energy, for the machine then makes its motions in time again: %s a cycle that axes now fall short.", seconds(x.Regained))
 	case x.Regained > 1e-2:
-		return fmt.Sprintf("The machine also gains %s a cycle that axes now fall short.", shown(x.Regained, units.Time))
+		return fmt.Sprintf("The machine also gains %s a cycle that axes now fall short.", seconds(x.Regained))
 	case x.Alone.Energy <= 0:
 		return "It saves no energy; it is done for the life and the safety of the machine."
 	case x.InOrder.Energy < 0.02*x.Alone.Energy:

@@ -6,6 +6,7 @@ import (
 	"slices"
 
 	"barlitre/audit"
+	"barlitre/audit/look"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -19,22 +20,22 @@ const (
 // marginAboveNeed finds a load-sensing margin turned up.
 func marginAboveNeed(p *plant) []*Finding {
 	var out []*Finding
-	for _, pump := range p.blocks("pump") {
-		if word(pump, "control") != "load_sensing" || value(pump, "margin") <= marginLimit {
+	for _, pump := range p.Blocks("pump") {
+		if look.Word(pump, "control") != "load_sensing" || look.Value(pump, "margin") <= marginLimit {
 			continue
 		}
-		m := value(pump, "margin")
-		top := p.highest(pump.ID+".P.p", moving)
+		m := look.Value(pump, "margin")
+		top := p.Highest(pump.ID+".P.p", look.Moving)
 		f := p.found(pump, "load-sensing margin above need", Settings, NoCost)
-		f.Param, f.Duty, f.Time = "margin", top.duty, top.t
-		f.Text = fmt.Sprintf("%s stands %s above the load; 14 to 25 bar move a sound machine.", pump.ID, bar(m))
+		f.Param, f.Duty, f.Time = "margin", top.Duty, top.T
+		f.Text = fmt.Sprintf("%s stands %s above the load; 14 to 25 bar move a sound machine.", pump.ID, p.bar(m))
 		f.Evidence = []Quantity{
-			{"margin of " + pump.ID, bar(m), "at most 35 bar"},
-			{"pump pressure at work, highest", top.bar(), ""},
-			{"margin as share of it", percent(m / top.v), ""},
+			{"margin of " + pump.ID, p.bar(m), "at most 35 bar"},
+			{"pump pressure at work, highest", p.bar(top.V), ""},
+			{"margin as share of it", percent(m / top.V), ""},
 		}
-		if mean, share := p.mean(pump.ID+".P.p", standing); share > 0 {
-			f.Evidence = append(f.Evidence, Quantity{"stand-by pressure", bar(mean), "10 to 35 bar"})
+		if mean, share := p.Mean(pump.ID+".P.p", look.Standing); share > 0 {
+			f.Evidence = append(f.Evidence, Quantity{"stand-by pressure", p.bar(mean), "10 to 35 bar"})
 		}
 		f.Do = "Read pump and signal pressure with one function moving; the difference is the margin. Turn it down in steps of 2 bar until the fastest motion just slows, then 2 bar up. If the machine swings then, look for air or a worn orifice in the signal line instead of turning it up again."
 		f.Caution = "Turn the margin, not the pressure cut-off: they sit side by side on most regulators. Keep hands off moving parts while it is set."
@@ -49,26 +50,26 @@ func marginAboveNeed(p *plant) []*Finding {
 // settingAboveNeed finds a compensator set to far above what the work needs.
 func settingAboveNeed(p *plant) []*Finding {
 	var out []*Finding
-	for _, pump := range p.blocks("pump") {
-		if word(pump, "control") != "pressure" {
+	for _, pump := range p.Blocks("pump") {
+		if look.Word(pump, "control") != "pressure" {
 			continue
 		}
-		ps, need := value(pump, "set_pressure"), p.workPressure(pump)
-		if !need.ok || need.v <= 0 || need.v > 0.42*ps {
+		ps, need := look.Value(pump, "set_pressure"), p.workPressure(pump)
+		if !need.OK || need.V <= 0 || need.V > 0.42*ps {
 			continue
 		}
 		f := p.found(pump, "pressure setting above need", Settings, NoCost)
-		f.Param, f.Duty, f.Time = "set_pressure", need.duty, need.t
-		f.Text = fmt.Sprintf("%s holds %s, and the highest load that hangs on it asks for %s: the valves burn the difference.", pump.ID, bar(ps), need.bar())
+		f.Param, f.Duty, f.Time = "set_pressure", need.Duty, need.T
+		f.Text = fmt.Sprintf("%s holds %s, and the highest load that hangs on it asks for %s: the valves burn the difference.", pump.ID, p.bar(ps), p.bar(need.V))
 		f.Evidence = []Quantity{
-			{"set pressure of " + pump.ID, bar(ps), "about the highest load pressure and 20 to 30 bar for the valve"},
-			{"highest pressure behind the valves", need.bar(), "above two fifths of the setting"},
+			{"set pressure of " + pump.ID, p.bar(ps), "about the highest load pressure and 20 to 30 bar for the valve"},
+			{"highest pressure behind the valves", p.bar(need.V), "above two fifths of the setting"},
 			{"stand-by loss a year", kilowattHours(p.standing(pump)), ""},
 		}
 		f.Do = "With the heaviest load that the machine must move, turn the compensator down until the motion just slows, then up by a tenth. Write the new value beside the old one on the machine."
 		f.Caution = "Ask production for the heaviest work of the year before turning down; keep pressure for clamps and brakes that this drawing does not show."
 		f.Basis = "need below two fifths of the setting: common practice, no source"
-		n := need.v
+		n := need.V
 		f.Cures = p.pressures(lower, pump, "set_pressure", n+20e5, n+30e5, n+45e5, n+60e5)
 		out = append(out, f)
 	}
@@ -81,52 +82,52 @@ func settingAboveNeed(p *plant) []*Finding {
 //	need = pFed + u²·(pP − pFed) − (1 − u²)·r·(pBack − pT)
 //
 // for all drops go with 1/u², and the pressure at the back counts by r, the area of its side over that of the fed one.
-func (p *plant) workPressure(pump *circuit.Block) moment {
-	var best moment
-	for _, r := range p.supply(pump) {
-		b := p.c.Block(r.Block)
+func (p *plant) workPressure(pump *circuit.Block) look.Moment {
+	var best look.Moment
+	for _, r := range p.Supply(pump) {
+		b := p.C.Block(r.Block)
 		if b == nil || r.Port != "P" {
 			continue
 		}
-		var m moment
+		var m look.Moment
 		switch b.Kind {
 		case "valve":
 			m = p.valveNeed(b)
 		case "compensator", "flow_sharing", "reducing", "sequence", "flow_control":
-			m = p.highest(b.ID+".A.p", moving)
+			m = p.Highest(b.ID+".A.p", look.Moving)
 		default:
 			continue
 		}
-		if m.ok && (!best.ok || m.v > best.v) {
+		if m.OK && (!best.OK || m.V > best.V) {
 			best = m
 		}
 	}
 	return best
 }
 
-func (p *plant) valveNeed(b *circuit.Block) moment {
-	at := func(d *audit.DutyRun, s *states, i int, what string) float64 {
-		if k := track(d, b.ID+"."+what); k != nil {
-			return valueOf(k, s, i)
+func (p *plant) valveNeed(b *circuit.Block) look.Moment {
+	at := func(d *audit.DutyRun, s *look.Course, i int, what string) float64 {
+		if k := look.Track(d, b.ID+"."+what); k != nil {
+			return look.ValueOf(k, s, i)
 		}
 		return 0
 	}
 	var cyl *circuit.Block
-	for _, c := range p.blocks("cylinder") {
+	for _, c := range p.Blocks("cylinder") {
 		if c.Word("axis") == b.Word("follows")+b.Word("directs") {
 			cyl = c
 		}
 	}
-	return p.top(moving, func(d *audit.DutyRun, s *states, i int) float64 {
+	return p.Top(look.Moving, func(d *audit.DutyRun, s *look.Course, i int) float64 {
 		u, fed, back := at(d, s, i, "u"), "A.p", "B.p"
 		if u == 0 {
 			return math.Inf(-1)
 		}
 		r := 1.0
 		if cyl != nil {
-			rod := value(cyl, "rod") / value(cyl, "bore")
+			rod := look.Value(cyl, "rod") / look.Value(cyl, "bore")
 			r = 1 - rod*rod
-			if track(d, cyl.ID+".v") != nil && valueOf(track(d, cyl.ID+".v"), s, i) < 0 {
+			if look.Track(d, cyl.ID+".v") != nil && look.ValueOf(look.Track(d, cyl.ID+".v"), s, i) < 0 {
 				r = 1 / r
 			}
 		}
@@ -140,7 +141,7 @@ func (p *plant) valveNeed(b *circuit.Block) moment {
 
 // standing is what a pump loses while nothing moves [J a year].
 func (p *plant) standing(pump *circuit.Block) float64 {
-	l := p.lost("", pump.ID)
+	l := p.Lost("", pump.ID)
 	return l.Idle + l.Holding
 }
 
@@ -149,32 +150,32 @@ const ruleStandBy = "stand-by pressure too high"
 // standByHigh finds a regulated pump that does not come down while nothing moves.
 func standByHigh(p *plant) []*Finding {
 	var out []*Finding
-	for _, pump := range p.blocks("pump") {
-		control := word(pump, "control")
-		mean, share := p.above(pump.ID+".P.p", standByLimit)
+	for _, pump := range p.Blocks("pump") {
+		control := look.Word(pump, "control")
+		mean, share := p.Above(pump.ID+".P.p", standByLimit)
 		if share < 0.02 {
 			continue
 		}
 		f := p.found(pump, ruleStandBy, Settings, NoCost)
 		f.Evidence = []Quantity{
-			{"mean pressure at " + pump.ID + " in that time", bar(mean), "at most 35 bar"},
+			{"mean pressure at " + pump.ID + " in that time", p.bar(mean), "at most 35 bar"},
 			{"share of the time so, with nothing moving", percent(share), ""},
 			{"loss of " + pump.ID + " with nothing moving, a year", kilowattHours(p.standing(pump)), ""},
 		}
-		switch at := p.highest(pump.ID+".P.p", standing); {
+		switch at := p.Highest(pump.ID+".P.p", look.Standing); {
 		case control == "load_sensing":
-			ls := p.highest(pump.ID+".LS.p", standing).v
+			ls := p.Highest(pump.ID+".LS.p", look.Standing).V
 			if !(ls > 5e5) {
 				continue // then it is the margin
 			}
-			f.Param, f.Duty, f.Time = "margin", at.duty, at.t
-			f.Text = fmt.Sprintf("%s stays at %s though nothing moves, because its signal line is not relieved: it still carries up to %s.", pump.ID, bar(mean), bar(ls))
-			f.Evidence = append(f.Evidence, Quantity{"signal pressure meanwhile, highest", bar(ls), "near zero"})
+			f.Param, f.Duty, f.Time = "margin", at.Duty, at.T
+			f.Text = fmt.Sprintf("%s stays at %s though nothing moves, because its signal line is not relieved: it still carries up to %s.", pump.ID, p.bar(mean), p.bar(ls))
+			f.Evidence = append(f.Evidence, Quantity{"signal pressure meanwhile, highest", p.bar(ls), "near zero"})
 			f.Do = "Take the signal line off at the valve with the machine safe and the line drained: the pump must fall to its margin. Clean the bleed orifice, and see that the valve joins the signal to tank in its centre."
 			f.Cures = p.relieved(pump)
-		case control == "pressure" && p.c.PumpAtRest == circuit.Unload && value(pump, "unloaded_pressure") > standByLimit:
+		case control == "pressure" && p.C.PumpAtRest == circuit.Unload && look.Value(pump, "unloaded_pressure") > standByLimit:
 			f.Param = "unloaded_pressure"
-			f.Text = fmt.Sprintf("%s is to unload at rest but stays at %s.", pump.ID, bar(mean))
+			f.Text = fmt.Sprintf("%s is to unload at rest but stays at %s.", pump.ID, p.bar(mean))
 			f.Do = "Check the solenoid of the second pressure stage and its pilot valve; set the low stage to the lowest pressure that the pilots need."
 			f.Cures = p.pressures(lower, pump, "unloaded_pressure", 20e5)
 		default:
@@ -189,13 +190,13 @@ func standByHigh(p *plant) []*Finding {
 
 // relieved takes the signal of a pump from a valve that has an open LS port.
 func (p *plant) relieved(pump *circuit.Block) []Cure {
-	for _, r := range p.supply(pump) {
-		b := p.c.Block(r.Block)
+	for _, r := range p.Supply(pump) {
+		b := p.C.Block(r.Block)
 		if b == nil || b.Kind != "valve" || r.Port != "P" {
 			continue
 		}
-		if n := p.c.Joined(circuit.PortRef{Block: b.ID, Port: "LS"}); len(n) == 1 {
-			return []Cure{{{rewire, p.c.Name + "/" + pump.ID + ".LS", b.ID + ".LS"}}}
+		if n := p.C.Joined(circuit.PortRef{Block: b.ID, Port: "LS"}); len(n) == 1 {
+			return []Cure{{{rewire, p.C.Name + "/" + pump.ID + ".LS", b.ID + ".LS"}}}
 		}
 	}
 	return nil
@@ -205,22 +206,22 @@ func (p *plant) relieved(pump *circuit.Block) []Cure {
 func chargeHigh(p *plant) []*Finding {
 	var out []*Finding
 	loop := 0.0
-	for _, b := range p.blocks("pump") {
-		if word(b, "both_directions") == "yes" {
-			loop += value(b, "displacement")
+	for _, b := range p.Blocks("pump") {
+		if look.Word(b, "both_directions") == "yes" {
+			loop += look.Value(b, "displacement")
 		}
 	}
-	for _, cp := range p.blocks("charge_pump") {
-		pc, size := value(cp, "charge"), value(cp, "displacement")/loop
+	for _, cp := range p.Blocks("charge_pump") {
+		pc, size := look.Value(cp, "charge"), look.Value(cp, "displacement")/loop
 		high, large := pc > 31*units.Bar, loop > 0 && size > 0.31
 		if !high && !large {
 			continue
 		}
 		f := p.found(cp, "charge pressure or flow too high", Settings, NoCost)
 		f.Param = "charge"
-		spill := p.lost("", cp.ID)
-		f.Text = fmt.Sprintf("%s charges the loop at %s; all of its power becomes heat.", cp.ID, bar(pc))
-		f.Evidence = []Quantity{{"charge pressure", bar(pc), "12 to 30 bar"}, {"lost at " + cp.ID + " a year", kilowattHours(spill.Total()), ""}}
+		spill := p.Lost("", cp.ID)
+		f.Text = fmt.Sprintf("%s charges the loop at %s; all of its power becomes heat.", cp.ID, p.bar(pc))
+		f.Evidence = []Quantity{{"charge pressure", p.bar(pc), "12 to 30 bar"}, {"lost at " + cp.ID + " a year", kilowattHours(spill.Total()), ""}}
 		if loop > 0 {
 			f.Evidence = append(f.Evidence, Quantity{"size against the loop", percent(size), "10 to 30 %"})
 		}
@@ -249,17 +250,17 @@ func volumeText(d float64) string {
 // flushingHigh finds a flushing valve that takes out far more than cooling and cleaning need.
 func flushingHigh(p *plant) []*Finding {
 	var out []*Finding
-	for _, b := range p.blocks("flushing") {
-		top := p.highest(b.ID+".T.q", always)
-		low := p.lowest(b.ID+".T.q", always)
-		q := math.Max(math.Abs(top.v), math.Abs(low.v))
-		if !top.ok || q <= 22*units.LitrePerMinute {
+	for _, b := range p.Blocks("flushing") {
+		top := p.Highest(b.ID+".T.q", look.Always)
+		low := p.Lowest(b.ID+".T.q", look.Always)
+		q := math.Max(math.Abs(top.V), math.Abs(low.V))
+		if !top.OK || q <= 22*units.LitrePerMinute {
 			continue
 		}
 		f := p.found(b, "flushing flow too high", Settings, LowCost)
-		f.Param, f.Duty, f.Time = "nominal_flow", low.duty, low.t
-		f.Text = fmt.Sprintf("%s takes up to %s out of the loop, which the charge pump must feed again.", b.ID, shown(q, units.Flow))
-		f.Evidence = []Quantity{{"flushing flow", shown(q, units.Flow), "5 to 20 L/min"}, {"lost there a year", kilowattHours(p.lost("", b.ID).Total()), ""}}
+		f.Param, f.Duty, f.Time = "nominal_flow", low.Duty, low.T
+		f.Text = fmt.Sprintf("%s takes up to %s out of the loop, which the charge pump must feed again.", b.ID, p.Shown(q, units.Flow))
+		f.Evidence = []Quantity{{"flushing flow", p.Shown(q, units.Flow), "5 to 20 L/min"}, {"lost there a year", kilowattHours(p.Lost("", b.ID).Total()), ""}}
 		f.Do = "Fit the orifice that the maker names for the loop; check that the flushing relief valve opens a few bar below the charge pressure."
 		f.Caution = "Flushing carries the heat of the loop away: watch the case temperature after the change."
 		f.Basis = "flushing 5 to 20 L/min: common practice, no source"
@@ -272,26 +273,26 @@ func flushingHigh(p *plant) []*Finding {
 // runsIdle finds duties in which nothing moves while the motor runs. It is a habit, not a fault.
 func runsIdle(p *plant) []*Finding {
 	var out []*Finding
-	for _, d := range p.run.Duties {
-		if d.Balance == nil || d.Duty.Hours <= 0 || d.Balance.Seconds.Working > 0 || p.c.PumpAtRest == circuit.Stop {
+	for _, d := range p.Run.Duties {
+		if d.Balance == nil || d.Duty.Hours <= 0 || d.Balance.Seconds.Working > 0 || p.C.PumpAtRest == circuit.Stop {
 			continue
 		}
-		i := slices.IndexFunc(p.run.Year.Duties, func(y audit.YearDuty) bool { return y.Duty == d.Duty.Name })
+		i := slices.IndexFunc(p.Run.Year.Duties, func(y audit.YearDuty) bool { return y.Duty == d.Duty.Name })
 		if i < 0 {
 			continue
 		}
-		drawn := p.run.Year.Duties[i].Drawn
+		drawn := p.Run.Year.Duties[i].Drawn
 		mean := drawn / d.Duty.Hours
-		if drawn < 0.01*p.drawn() {
+		if drawn < 0.01*p.Drawn() {
 			continue
 		}
 		f := p.found(nil, "pump kept running idle", StopStart, NoCost)
 		f.Habit, f.Duty = true, d.Duty.Name
-		f.Text = fmt.Sprintf("In %s nothing moves for %s a year and the motor draws %s.", d.Duty.Name, shown(d.Duty.Hours, units.Time), shown(mean, units.Power))
+		f.Text = fmt.Sprintf("In %s nothing moves for %s a year and the motor draws %s.", d.Duty.Name, p.Shown(d.Duty.Hours, units.Time), p.Shown(mean, units.Power))
 		f.Evidence = []Quantity{
-			{"hours a year", shown(d.Duty.Hours, units.Time), "share of powered hours " + percent(d.Duty.Hours/p.run.Year.Hours)},
-			{"mean power drawn meanwhile", shown(mean, units.Power), ""},
-			{"drawn a year", kilowattHours(drawn), percent(drawn/p.drawn()) + " of all"},
+			{"hours a year", p.Shown(d.Duty.Hours, units.Time), "share of powered hours " + percent(d.Duty.Hours/p.Run.Year.Hours)},
+			{"mean power drawn meanwhile", p.Shown(mean, units.Power), ""},
+			{"drawn a year", kilowattHours(drawn), percent(drawn/p.Drawn()) + " of all"},
 		}
 		f.Do = "Switch the motor off in breaks of 20 minutes and more, by hand or by a timer. Name somebody who does it. The oil cools slowly; a short warm-up is seldom needed."
 		f.Caution = "Stopped is not safe: loads, accumulators and trapped oil keep their energy. Let the restart be by hand, and keep below the starts an hour that the motor's maker allows."
