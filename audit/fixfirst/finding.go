@@ -27,11 +27,11 @@ type Effort int
 const (
 	NoCost  Effort = iota // within an hour, nothing bought
 	LowCost               // a service visit, wearing parts
-	Invest                // a part of other size
+	Invest                // a part, new or of another size
 )
 
 func (e Effort) String() string {
-	return [...]string{"no cost", "low cost: a service visit, wearing parts", "a part of another size"}[e]
+	return [...]string{"no cost", "low cost: a service visit, wearing parts", "a part, new or of another size"}[e]
 }
 
 // Quantity is one piece of evidence: what was found and what it is compared with.

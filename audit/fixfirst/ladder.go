@@ -253,6 +253,8 @@ func (x *Step) Note() string {
 		return fmt.Sprintf("It costs energy, for the machine then makes its motions in time again: %s a cycle that axes now fall short.", seconds(x.Regained))
 	case x.Regained > 1e-2:
 		return fmt.Sprintf("The machine also gains %s a cycle that axes now fall short.", seconds(x.Regained))
+	case x.Alone.Energy <= 0 && x.InOrder.Energy > 0:
+		return "Alone it saves nothing, for what is gained here is lost at the faults above it; with those cured it does."
 	case x.Alone.Energy <= 0:
 		return "It saves no energy; it is done for the life and the safety of the machine."
 	case x.InOrder.Energy < 0.02*x.Alone.Energy:

@@ -106,44 +106,23 @@ func (c *Cache) solve(ctx context.Context, f *audit.File, name string) (outcome,
 	if o, ok := c.get(k); ok {
 		return o, nil
 	}
-	one := f.Clone()
-	for i := range one.Circuits {
-		if one.Circuits[i].Name == name {
-			one.Circuits = one.Circuits[i : i+1]
-			break
-		}
-	}
-	s, err := audit.Solve(ctx, one, audit.Options{})
-	if ctx.Err() != nil {
-		return outcome{}, ctx.Err()
+	_, run, err := SolveOne(ctx, f, name)
+	if err != nil {
+		return outcome{}, err
 	}
 	o := outcome{fault: "it cannot be solved so"}
-	if err == nil && len(s.Circuits) == 1 {
-		o = outcomeOf(s.Circuits[0])
+	if run != nil {
+		o = outcomeOf(run)
 	}
 	c.put(k, o)
 	return o, nil
-}
-
-// cure puts edits into a copy of a file.
-func cure(f *audit.File, edits Cure) (*audit.File, error) {
-	g := f.Clone()
-	if g == nil {
-		return nil, fmt.Errorf("the file cannot be read again")
-	}
-	for _, e := range edits {
-		if err := e.apply(g); err != nil {
-			return nil, err
-		}
-	}
-	return g, nil
 }
 
 // choose takes the first cure of a finding that can be solved and leaves the motion as it was before.
 func (c *Cache) choose(ctx context.Context, f *audit.File, before outcome, x *Finding) (*audit.File, Cure, outcome, string, error) {
 	why := "no edit of the drawing stands for its cure"
 	for _, edits := range x.Cures {
-		g, err := cure(f, edits)
+		g, err := Apply(f, edits)
 		if err != nil {
 			why = err.Error()
 			continue

@@ -34,10 +34,7 @@ func wornPump(p *plant) []*Finding {
 		if was <= 0 || slip < 2*was || share < 0.08 {
 			continue
 		}
-		f := p.found(b, "worn "+circuit.KindNamed(b.Kind).Title, Repair, Invest)
-		if b.Kind != "motor" {
-			f.Rule = "worn pump"
-		}
+		f := p.found(b, map[bool]string{true: "worn motor", false: "worn pump"}[b.Kind == "motor"], Repair, Invest)
 		f.Param = edits[0].Target[len(p.C.Name)+len(b.ID)+2:]
 		top := p.Highest(b.ID+".P.p", look.Moving)
 		if b.Kind == "motor" {
@@ -54,8 +51,8 @@ func wornPump(p *plant) []*Finding {
 		f.Do = "Measure the case drain warm, at full pressure and speed, into a measured can or a small gear meter; compare with the figure from when it was new. If it confirms, have it overhauled or exchanged, and look for the dirt that did it."
 		f.Caution = "The drain line is hot and must never be closed: its back pressure bursts the shaft seal. Catch the oil, keep hands away from the coupling."
 		f.Basis = "two to four times the slip of a new one is worn, and some 10 % of flow may be normal: trade literature and common practice"
-		if b.Values["slip"].Origin == circuit.Assumed {
-			f.Basis += ". The slip of " + b.ID + " is assumed: measure it before money is spent"
+		if b.Values[f.Param].Origin == circuit.Assumed {
+			f.Basis += ". What is known of its leakage is assumed: measure it before money is spent"
 		}
 		f.Cures = []Cure{edits}
 		out = append(out, f)
@@ -80,11 +77,10 @@ func (p *plant) asNew(b *circuit.Block) (*circuit.Block, Cure) {
 		n.Values["wear"] = one
 		return &n, Cure{{set, p.target(b, "wear"), "1"}}
 	}
-	if q, ok := b.Values["drain_flow"]; ok {
+	if _, ok := b.Values["drain_flow"]; ok {
 		law, _ := circuit.MachineLaw(&n, p.S.Conditions)
 		dp := look.Value(b, "drain_pressure")
 		fresh := look.Value(b, "case_share") * law.Slip(1, 0, dp, p.S.Conditions.Viscosity, p.S.Conditions.Density, 1e9)
-		_ = q
 		return &n, Cure{{set, p.target(b, "drain_flow"), fmt.Sprintf("%.5g L/min", fresh/units.LitrePerMinute)}}
 	}
 	delete(n.Values, "best_volumetric")

@@ -288,9 +288,9 @@ func runsIdle(p *plant) []*Finding {
 		}
 		f := p.found(nil, "pump kept running idle", StopStart, NoCost)
 		f.Habit, f.Duty = true, d.Duty.Name
-		f.Text = fmt.Sprintf("In %s nothing moves for %s a year and the motor draws %s.", d.Duty.Name, p.Shown(d.Duty.Hours, units.Time), p.Shown(mean, units.Power))
+		f.Text = fmt.Sprintf("In %s nothing moves for %s a year and the motor draws %s.", d.Duty.Name, yearHours(d.Duty.Hours), p.Shown(mean, units.Power))
 		f.Evidence = []Quantity{
-			{"hours a year", p.Shown(d.Duty.Hours, units.Time), "share of powered hours " + percent(d.Duty.Hours/p.Run.Year.Hours)},
+			{"hours a year", yearHours(d.Duty.Hours), "share of powered hours " + percent(d.Duty.Hours/p.Run.Year.Hours)},
 			{"mean power drawn meanwhile", p.Shown(mean, units.Power), ""},
 			{"drawn a year", kilowattHours(drawn), percent(drawn/p.Drawn()) + " of all"},
 		}
@@ -302,3 +302,5 @@ func runsIdle(p *plant) []*Finding {
 	}
 	return out
 }
+
+func yearHours(s float64) string { return units.Number(s/units.Hour, 4) + "\u202fh" }

@@ -86,7 +86,7 @@ func (w words) both(s Saving) string {
 	if math.IsNaN(s.Money) || w.currency == "" {
 		return w.energy(s.Energy)
 	}
-	return w.energy(s.Energy) + ", " + w.money(s.Money)
+	return w.energy(s.Energy) + " (" + w.money(s.Money) + ")"
 }
 
 func (w words) verdict(l *Ladder) string {
@@ -96,7 +96,7 @@ func (w words) verdict(l *Ladder) string {
 	}
 	faults := map[int]string{0: "No fault was found", 1: "One fault was found"}[n]
 	if faults == "" {
-		faults = fmt.Sprintf("%s faults were found", units.Number(float64(n), 3))
+		faults = fmt.Sprintf("%d faults were found", n)
 	}
 	habits := len(l.Steps) - n
 	switch {
@@ -107,9 +107,9 @@ func (w words) verdict(l *Ladder) string {
 	}
 	share := ""
 	if l.AsFound.Drawn > 0 {
-		share = " (" + units.Format(total.Energy/l.AsFound.Drawn, units.Percent, 3) + ")"
+		share = ", " + units.Format(total.Energy/l.AsFound.Drawn, units.Percent, 3)
 	}
-	return fmt.Sprintf("%s. Put right in the order below, %s would draw %s a year in place of %s: %s less%s. That is the machine a proposal has to beat.",
+	return fmt.Sprintf("%s. Put right in the order below, the circuit \"%s\" would draw %s a year in place of %s: %s less%s. That is the machine a proposal has to beat.",
 		faults, l.Circuit, w.energy(l.Cured.Drawn), w.energy(l.AsFound.Drawn), w.both(total), share)
 }
 
@@ -159,8 +159,8 @@ func (w words) split(l *Ladder, s Split) SplitPage {
 	row(false, "what "+s.Proposal+" adds", s.Architecture)
 	row(true, "saving in all", s.Whole)
 	page := SplitPage{Proposal: s.Proposal, Table: t}
-	page.Text = fmt.Sprintf("Of the %s that %s saves against %s as it was found, %s could be had without it. With those put right, it adds %s.",
-		w.both(s.Whole), s.Proposal, l.Circuit, w.both(l.Total()), w.both(s.Architecture))
+	page.Text = fmt.Sprintf("Of the %s that %s saves a year, %s can be had without it, by putting %s right. With that done it adds %s.",
+		w.both(s.Whole), s.Proposal, w.both(l.Total()), l.Circuit, w.both(s.Architecture))
 	if s.Whole.Energy <= 0 || l.Total().Energy <= 0 {
 		page.Text = fmt.Sprintf("Against %s with its faults cured, %s saves %s.", l.Circuit, s.Proposal, w.both(s.Architecture))
 	}
