@@ -16,6 +16,7 @@ import (
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
 	"barlitre/audit/pdf"
+	"barlitre/audit/sitecheck"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -120,8 +121,16 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 	}
 	if c.pdf != "" {
 		out := c.pdfPath(path)
+		opt := pdf.Options{System: c.system, Date: time.Now()}
+		for _, l := range ladders {
+			opt.FixFirst = append(opt.FixFirst, l.Page(c.system))
+		}
+		if opt.SiteCheck, err = sitecheck.All(ctx, s, sitecheck.Options{System: c.system}); err != nil {
+			fmt.Fprintf(errs, "barlitre audit: %s: %v\n", path, err)
+			return nil, exitUnreadable
+		}
 		if err := writeWhole(out, func(w io.Writer) error {
-			return pdf.Write(w, s, pdf.Options{System: c.system, Date: time.Now()})
+			return pdf.Write(w, s, opt)
 		}); err != nil {
 			fmt.Fprintln(errs, "barlitre audit:", err)
 			return nil, exitUnreadable
