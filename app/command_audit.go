@@ -125,7 +125,7 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 		for _, l := range ladders {
 			opt.FixFirst = append(opt.FixFirst, l.Page(c.system))
 		}
-		if opt.SiteCheck, err = sitecheck.All(ctx, s, sitecheck.Options{System: c.system}); err != nil {
+		if opt.SiteCheck, err = sitecheck.All(ctx, s, sitecheck.Options{System: c.system, Ladders: ladders}); err != nil {
 			fmt.Fprintf(errs, "barlitre audit: %s: %v\n", path, err)
 			return nil, exitUnreadable
 		}

@@ -9,6 +9,7 @@ import (
 	"os/signal"
 
 	"barlitre/audit"
+	"barlitre/audit/fixfirst"
 	"barlitre/audit/sitecheck"
 )
 
@@ -31,7 +32,11 @@ func siteCheck(args []string, out, errs io.Writer) int {
 		if s == nil {
 			continue
 		}
-		plans, err := sitecheck.All(ctx, s, sitecheck.Options{System: system})
+		ladders, err := fixfirst.All(ctx, s, fixfirst.Options{System: system})
+		var plans []*sitecheck.Plan
+		if err == nil {
+			plans, err = sitecheck.All(ctx, s, sitecheck.Options{System: system, Ladders: ladders})
+		}
 		if err != nil {
 			fmt.Fprintf(errs, "barlitre sitecheck: %s: %v\n", path, err)
 			return exitUnreadable
@@ -47,7 +52,7 @@ func siteCheck(args []string, out, errs io.Writer) int {
 func printSiteCheck(w io.Writer, p *sitecheck.Plan, readings []audit.Reading) {
 	heading(w, "Site check: "+p.Circuit)
 	wrap(w, sitecheck.Intro)
-	wrap(w, sitecheck.StateText())
+	wrap(w, "States: "+sitecheck.StateText())
 	rows := [][]string{{"", "stopped", "idling", "holding", "working"}}
 	for _, pt := range p.Points {
 		row := []string{pt.What + ", " + pt.Name}

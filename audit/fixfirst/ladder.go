@@ -274,6 +274,17 @@ func (l *Ladder) Faults() int {
 	return n
 }
 
+// Faultless are the edits that cure what is a fault, habits left as they are.
+func (l *Ladder) Faultless() Cure {
+	var out Cure
+	for _, x := range l.Steps {
+		if !x.Habit && x.Unpriced == "" {
+			out = append(out, x.Cure...)
+		}
+	}
+	return out
+}
+
 // Total is what all priced cures save together.
 func (l *Ladder) Total() Saving {
 	var sum Saving

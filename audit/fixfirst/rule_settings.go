@@ -290,9 +290,9 @@ func runsIdle(p *plant) []*Finding {
 		f.Habit, f.Duty = true, d.Duty.Name
 		f.Text = fmt.Sprintf("In %s nothing moves for %s a year and the motor draws %s.", d.Duty.Name, yearHours(d.Duty.Hours), p.Shown(mean, units.Power))
 		f.Evidence = []Quantity{
-			{"hours a year", yearHours(d.Duty.Hours), "share of powered hours " + percent(d.Duty.Hours/p.Run.Year.Hours)},
+			{"hours a year", yearHours(d.Duty.Hours) + ", " + percent(d.Duty.Hours/p.Run.Year.Hours) + " of all", "as few as the work allows"},
 			{"mean power drawn meanwhile", p.Shown(mean, units.Power), ""},
-			{"drawn a year", kilowattHours(drawn), percent(drawn/p.Drawn()) + " of all"},
+			{"drawn a year", kilowattHours(drawn) + ", " + percent(drawn/p.Drawn()) + " of all", ""},
 		}
 		f.Do = "Switch the motor off in breaks of 20 minutes and more, by hand or by a timer. Name somebody who does it. The oil cools slowly; a short warm-up is seldom needed."
 		f.Caution = "Stopped is not safe: loads, accumulators and trapped oil keep their energy. Let the restart be by hand, and keep below the starts an hour that the motor's maker allows."

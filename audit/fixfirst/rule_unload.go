@@ -35,7 +35,7 @@ func unloadsAtPressure(p *plant) []*Finding {
 		f.Evidence = []Quantity{
 			{"mean pressure at " + pump.ID + " while nothing moves", p.bar(mean), "2 to 20 bar"},
 			{"share of the time", percent(share), ""},
-			{"drawn meanwhile a year", kilowattHours(p.Run.Year.Drawn.Idle + p.Run.Year.Drawn.Holding), percent((p.Run.Year.Drawn.Idle+p.Run.Year.Drawn.Holding)/p.Drawn()) + " of all"},
+			{"drawn meanwhile a year", kilowattHours(p.Run.Year.Drawn.Idle+p.Run.Year.Drawn.Holding) + ", " + percent((p.Run.Year.Drawn.Idle+p.Run.Year.Drawn.Holding)/p.Drawn()) + " of all", ""},
 			{"of it over relief valves", kilowattHours(spill), "nothing"},
 		}
 		f.Basis = "unloaded circulation 2 to 20 bar: common practice, no source"

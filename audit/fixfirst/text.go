@@ -114,8 +114,8 @@ func (w words) verdict(l *Ladder) string {
 }
 
 func (w words) ladder(l *Ladder) audit.Table {
-	t := audit.Table{Title: "What to put right, in this order", Head: []string{"", "what", "takes", "alone, a year", "", "in order, a year", ""},
-		Note: "First what costs nothing, then service, then parts; within each the largest saving first. \"Alone\" is the saving if nothing else is done, \"in order\" what it adds to those above it. Both come from balancing the circuit again with the cure in it."}
+	t := audit.Table{Title: "What to put right, in this order", Head: []string{"", "what", "takes", "alone", "", "in order", ""},
+		Note: "A year. First what costs nothing, then service, then parts; within each the largest saving first. \"Alone\" is the saving if nothing else is done, \"in order\" what it adds to those above it. Both come from balancing the circuit again with the cure in it."}
 	for i, x := range l.Steps {
 		t.Rows = append(t.Rows, audit.TableRow{Cells: []string{fmt.Sprint(i + 1), x.Name(), x.Effort.short(), w.energy(x.Alone.Energy), w.money(x.Alone.Money), w.energy(x.InOrder.Energy), w.money(x.InOrder.Money)}})
 	}

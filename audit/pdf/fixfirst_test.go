@@ -23,7 +23,7 @@ func adviceOf(t *testing.T, s *audit.Solution) Options {
 	for _, l := range ladders {
 		opt.FixFirst = append(opt.FixFirst, l.Page(units.Metric))
 	}
-	if opt.SiteCheck, err = sitecheck.All(context.Background(), s, sitecheck.Options{}); err != nil {
+	if opt.SiteCheck, err = sitecheck.All(context.Background(), s, sitecheck.Options{Ladders: ladders}); err != nil {
 		t.Fatal(err)
 	}
 	return opt

@@ -1,6 +1,8 @@
 package pdf
 
 import (
+	"strings"
+
 	"barlitre/audit/sitecheck"
 )
 
@@ -18,11 +20,11 @@ func (l *layout) siteCheck() {
 
 func (l *layout) plan(p *sitecheck.Plan) {
 	small := l.small()
-	l.lead(side, "Circuit "+p.Circuit+".", sitecheck.Intro, l.body())
-	l.lead(side, "States.", sitecheck.StateText(), small)
+	l.lead(side, "Circuit “"+p.Circuit+"”.", sitecheck.Intro, l.body())
+	l.lead(side, "States.", upper(sitecheck.StateText()), small)
 	t := table{cols: []column{{"where, and gauge", false}, {"stopped", true}, {"idling", true}, {"holding", true}, {"working", true}, {"bad looks like", false}, {"caution for this point", false}}}
 	for _, pt := range p.Points {
-		cells := []string{pt.What + ": " + pt.Place + ". " + pt.Gauge + "; " + pt.Rate}
+		cells := []string{pt.What + ", " + pt.Place + "; " + pt.Gauge + "; " + pt.Rate}
 		for _, s := range sitecheck.States() {
 			cells = append(cells, p.Shown(pt, s.Name))
 		}
@@ -47,3 +49,6 @@ func (l *layout) readings(p *sitecheck.Plan) {
 	l.para(v.Text, l.body())
 	l.table(fromReport(p.ReadTable(v)))
 }
+
+// upper begins a sentence.
+func upper(text string) string { return strings.ToUpper(text[:1]) + text[1:] }

@@ -6,6 +6,7 @@ import (
 	"sort"
 
 	"barlitre/audit"
+	"barlitre/audit/fixfirst"
 	"barlitre/audit/look"
 	"barlitre/machines/units"
 )
@@ -23,6 +24,7 @@ type Plan struct {
 type Options struct {
 	System   units.System
 	Cache    *Cache
+	Ladders  []*fixfirst.Ladder    // of the circuits as found, if there are any: good is what is read with their faults cured
 	Progress func(done, total int) // from any goroutine, one call at a time
 }
 
@@ -35,14 +37,43 @@ func NewPlan(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt 
 	if p := opt.Cache.get(key); p != nil {
 		return p, nil
 	}
-	p := look.New(s, run, opt.System)
-	out := &Plan{Title: s.File.Title, Circuit: run.Circuit.Name, System: opt.System, Points: points(p), Faults: faults(p)}
-	out.Sound = modelOf(p, out.Points)
-	if err := solve(ctx, s.File, run.Circuit.Name, out.Points, out.Faults, opt.System, opt.Progress); err != nil {
+	sound, asDrawn, err := cured(ctx, s, run, opt)
+	if err != nil {
 		return nil, err
+	}
+	p := look.New(s, run, opt.System)
+	out := &Plan{Title: s.File.Title, Circuit: run.Circuit.Name, System: opt.System, Points: points(p), Faults: faults(sound)}
+	out.Sound = modelOf(sound, out.Points)
+	if err := solve(ctx, sound.S.File, run.Circuit.Name, out.Points, out.Faults, opt.System, opt.Progress); err != nil {
+		return nil, err
+	}
+	if asDrawn != "" {
+		out.Faults = append(out.Faults, &Fault{Name: "as drawn, with " + asDrawn, Do: "What to do stands under Fix first.", model: []Model{modelOf(p, out.Points)}})
 	}
 	opt.Cache.put(key, out)
 	return out, nil
+}
+
+// cured is the circuit with its known faults cured, and what they are; the circuit as it is where none is known.
+func cured(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt Options) (*look.Plant, string, error) {
+	as := look.New(s, run, opt.System)
+	for _, l := range opt.Ladders {
+		if l.Circuit != run.Circuit.Name || len(l.Faultless()) == 0 {
+			continue
+		}
+		g, err := fixfirst.Apply(s.File, l.Faultless())
+		if err != nil {
+			continue // two cures of one thing: the circuit as it is
+		}
+		sol, other, err := fixfirst.SolveOne(ctx, g, run.Circuit.Name)
+		if err != nil {
+			return nil, "", err
+		}
+		if other != nil {
+			return look.New(sol, other, opt.System), l.Names(), nil
+		}
+	}
+	return as, "", nil
 }
 
 // All writes a plan for every circuit as found of a solution.

@@ -21,7 +21,7 @@ func StateText() string {
 	for _, s := range States() {
 		parts = append(parts, s.Name+" ("+s.Text+")")
 	}
-	return "States: " + strings.Join(parts, ", ") + "."
+	return strings.Join(parts, ", ") + "."
 }
 
 // Shown writes what the model says of a point in a state.
@@ -67,6 +67,12 @@ func (p *Plan) Bad(pt Point) string {
 		return "warmer than the tank: oil passes " + pt.Block
 	case pt.Dim == units.Temperature:
 		return "above 65 °C: cooler off or dirty; below 35 °C: overcooled"
+	}
+	switch pt.What {
+	case "load pressure":
+		return "much more: a guide jams or the load is heavier; much less: another load than in the duty"
+	case "load signal":
+		return "pressure while nothing moves: the signal line is not relieved"
 	}
 	return "far from the values beside it: compare drawing and settings"
 }
