@@ -14,7 +14,9 @@ import (
 	"time"
 
 	"barlitre/audit"
+	"barlitre/audit/fixfirst"
 	"barlitre/audit/pdf"
+	"barlitre/audit/sitecheck"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -48,15 +50,8 @@ func parseAudit(args []string, errs io.Writer) (auditCall, error) {
 	if c.files, err = parseMixed(f, args); err != nil {
 		return c, err
 	}
-	switch *system {
-	case "metric":
-		c.system = units.Metric
-	case "us":
-		c.system = units.US
-	case "si":
-		c.system = units.SI
-	default:
-		return c, fmt.Errorf("-units %s: use metric, us or si", *system)
+	if c.system, err = systemNamed(*system); err != nil {
+		return c, err
 	}
 	if len(c.files) == 0 {
 		return c, errors.New("name at least one audit file")
@@ -110,23 +105,11 @@ func worse(a, b int) int {
 
 // one audits one file.
 func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) (*audit.Result, int) {
-	f, found := audit.Read(path)
-	if f == nil {
-		printFindings(errs, path, found)
-		return nil, exitUnreadable
+	s, code := solveFile(ctx, "audit", path, c.set, audit.Options{CSV: c.csvFiles(path)}, errs)
+	if s == nil {
+		return nil, code
 	}
-	for _, s := range c.set {
-		target, quantity, _ := strings.Cut(s, "=")
-		if err := f.Set(strings.TrimSpace(target), quantity); err != nil {
-			fmt.Fprintf(errs, "barlitre audit: -set %s: %v\n", s, err)
-			return nil, exitUnreadable
-		}
-	}
-	if found := f.Findings(); circuit.AnyStops(found) {
-		printFindings(errs, path, found)
-		return nil, exitUnsolvable
-	}
-	s, err := audit.Solve(ctx, f, audit.Options{CSV: c.csvFiles(path)})
+	ladders, err := fixfirst.All(ctx, s, fixfirst.Options{System: c.system})
 	if err != nil {
 		fmt.Fprintf(errs, "barlitre audit: %s: %v\n", path, err)
 		return nil, exitUnreadable
@@ -134,11 +117,22 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 	report := s.Report(c.system)
 	if c.json != "-" {
 		printReport(text, report)
+		for _, l := range ladders {
+			printFixFirst(text, l.Page(c.system), false)
+		}
 	}
 	if c.pdf != "" {
 		out := c.pdfPath(path)
+		opt := pdf.Options{System: c.system, Date: time.Now()}
+		for _, l := range ladders {
+			opt.FixFirst = append(opt.FixFirst, l.Page(c.system))
+		}
+		if opt.SiteCheck, err = sitecheck.All(ctx, s, sitecheck.Options{System: c.system, Ladders: ladders}); err != nil {
+			fmt.Fprintf(errs, "barlitre audit: %s: %v\n", path, err)
+			return nil, exitUnreadable
+		}
 		if err := writeWhole(out, func(w io.Writer) error {
-			return pdf.Write(w, s, pdf.Options{System: c.system, Date: time.Now()})
+			return pdf.Write(w, s, opt)
 		}); err != nil {
 			fmt.Fprintln(errs, "barlitre audit:", err)
 			return nil, exitUnreadable
@@ -151,7 +145,11 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 			return nil, exitUnreadable
 		}
 	}
-	return s.Result(), exitOf(s, path, errs)
+	result := s.Result()
+	for _, l := range ladders {
+		result.FixFirst = append(result.FixFirst, l.Result())
+	}
+	return result, code
 }
 
 // exitOf says by its code how a solution went.

@@ -147,6 +147,14 @@ const Format = "barlitre/1"
 // sheet, at their upper left corner; groups are labelled boxes around blocks. Neither
 // changes what is computed.
 //
+// What was read at the machine in a site check stands last, by state, block and quantity (see Reading):
+//
+//	site_check:
+//	  idling.M1.power: 5.2 kW
+//	  working.P1.pressure: 150 bar
+//
+// It changes nothing that is computed.
+//
 // What Copy puts into the clipboard is an audit file with one circuit, of format, title
 // and circuits alone; Paste takes the first circuit of any audit file.
 type File struct {
@@ -176,6 +184,7 @@ type File struct {
 	Sources  []Source  // by duty; the zero Source where the points stand in the audit file
 	Imports  []*Import // by duty; nil where no recipe says how its recording is read
 	Circuits []CircuitEntry
+	Readings []Reading // of a site check
 
 	data   []byte
 	root   *yaml.Node // the top mapping, or nil

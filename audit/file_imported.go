@@ -216,6 +216,8 @@ func (r *reader) channel(s scope, rec *logger.Recording, at *yaml.Node, key, col
 	if t == nil {
 		return c.Values()
 	}
+	t.Lock()
+	defer t.Unlock()
 	if t.channels[column] == nil {
 		t.channels[column] = c.Values()
 	}

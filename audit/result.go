@@ -45,6 +45,8 @@ type Result struct {
 	Circuits    []CircuitResult    `json:"circuits"`
 	Comparisons []ComparisonResult `json:"comparisons"`
 	LimitsOfUse []string           `json:"limits_of_use"`
+	// FixFirst is what package fixfirst finds in the circuits as found, where it was asked.
+	FixFirst []any `json:"fix_first,omitempty"`
 }
 
 // CircuitResult is one circuit of a result file.

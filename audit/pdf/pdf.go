@@ -12,7 +12,9 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/figures"
+	"barlitre/audit/fixfirst"
 	"barlitre/audit/pen"
+	"barlitre/audit/sitecheck"
 	"barlitre/machines/units"
 )
 
@@ -25,6 +27,7 @@ const (
 	Basis      Section = "What the figures rest on"
 	Circuits   Section = "Circuits"
 	Energy     Section = "Where the energy goes"
+	FixFirst   Section = "What to put right first"
 	Machines   Section = "Machines and drives"
 	Duty       Section = "Duty and course over time"
 	Heat       Section = "Heat and cooler"
@@ -32,6 +35,7 @@ const (
 	Money      Section = "Money"
 	Parameters Section = "Values and where they come from"
 	Findings   Section = "Findings"
+	SiteCheck  Section = "Site check"
 	Method     Section = "Method and certificate"
 )
 
@@ -40,7 +44,7 @@ const cautionPages Section = "Cautions and limits of use"
 
 // Sections lists all sections in the order of printing; the slice is the caller's.
 func Sections() []Section {
-	return []Section{Decision, Basis, Circuits, Energy, Machines, Duty, Heat, Request, Money, Parameters, Findings, Method}
+	return []Section{Decision, Basis, Circuits, Energy, FixFirst, Machines, Duty, Heat, Request, Money, Parameters, Findings, SiteCheck, Method}
 }
 
 // Options of Write; only Date is needed.
@@ -48,6 +52,9 @@ type Options struct {
 	System  units.System
 	Date    time.Time // of the report, printed and written into the document
 	Without []Section // left out
+
+	FixFirst  []fixfirst.Page   // of the circuits as found; without them their section is left out
+	SiteCheck []*sitecheck.Plan // the same
 
 	Customer, Site, Author string // in place of those of the audit file; "" keeps them
 }
@@ -119,6 +126,8 @@ type layout struct {
 	date    string
 
 	site, customer, author string
+	fix                    []fixfirst.Page
+	plans                  []*sitecheck.Plan
 
 	room   float64         // share of the usual space between things
 	total  int             // pages in all, as the last printing found them
@@ -130,7 +139,14 @@ type layout struct {
 
 func newLayout(s *audit.Solution, opt Options) *layout {
 	l := &layout{s: s, r: s.Report(opt.System), without: opt.Without, date: opt.Date.Format("2006-01-02"),
-		site: opt.Site, customer: opt.Customer, author: opt.Author, room: 1, pictures: map[int][]figures.Picture{}}
+		site: opt.Site, customer: opt.Customer, author: opt.Author, fix: opt.FixFirst, plans: opt.SiteCheck, room: 1, pictures: map[int][]figures.Picture{}}
+	l.without = slices.Clone(l.without)
+	if len(l.fix) == 0 {
+		l.without = append(l.without, FixFirst)
+	}
+	if len(l.plans) == 0 {
+		l.without = append(l.without, SiteCheck)
+	}
 	for own, file := range map[*string]string{&l.site: l.r.Site.Name, &l.customer: l.r.Site.Customer, &l.author: l.r.Site.Author} {
 		if *own == "" {
 			*own = file
@@ -188,14 +204,14 @@ func (l *layout) print(to paper) {
 		Section
 		draw func()
 	}{
-		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat}, {Request, l.requests},
-		{Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {Method, l.method},
+		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {FixFirst, l.fixFirst}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat},
+		{Request, l.requests}, {Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {SiteCheck, l.siteCheck}, {Method, l.method},
 	} {
 		if slices.Contains(l.without, part.Section) || part.Section == Request && !l.asks() {
 			continue
 		}
-		if part.Section == Request && !l.fresh() {
-			l.newPage() // the sheets go to someone else
+		if (part.Section == Request || part.Section == SiteCheck) && !l.fresh() {
+			l.newPage() // these go to someone else, or are taken along alone
 		}
 		if part.Section != Decision {
 			l.heading(1, string(part.Section), l.follow(part.Section))
@@ -204,6 +220,9 @@ func (l *layout) print(to paper) {
 		part.draw()
 		if part.Section == Decision && len(l.r.Decisions) > 0 {
 			l.newPage() // what is signed stands by itself
+		}
+		if part.Section == SiteCheck && !l.fresh() {
+			l.newPage()
 		}
 	}
 	l.cautions()
