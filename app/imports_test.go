@@ -32,6 +32,7 @@ var arrows = map[string]arrow{
 	"samples":           {ours: []string{"audit", "circuit"}}, // tests only: the samples are data
 	"audit/pen":         {ours: []string{"assets"}, outside: []string{"github.com/jung-kurt/gofpdf", "golang.org/x/image"}},
 	"audit/figures":     {ours: []string{"audit", "circuit", "audit/pen", "machines/units", "circuit/..."}},
+	"audit/cure":        {ours: []string{"audit", "circuit", "audit/figures", "machines/units"}},
 	"audit/pdf":         {ours: []string{"audit", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/..."}, outside: []string{"github.com/jung-kurt/gofpdf"}},
 	"audit":             {ours: []string{"circuit", "circuit/...", "machines", "machines/units"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
 	"app/document":      {ours: []string{"audit", "audit/...", "circuit", "circuit/...", "machines", "machines/units", "samples"}},
