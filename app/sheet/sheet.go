@@ -23,9 +23,10 @@ type Station struct {
 
 	proposal string // name of the chosen proposal, "" = the first
 	energy   bool   // discs show a cycle instead of an instant
-	wide     bool   // one sheet in full width, as asked for
-	single   bool   // one sheet is shown, asked for or for want of room
-	active   int    // the sheet worked on last
+	hide     figures.Signs
+	wide     bool // one sheet in full width, as asked for
+	single   bool // one sheet is shown, asked for or for want of room
+	active   int  // the sheet worked on last
 	fold     fold
 	scales   figures.SheetScales
 }
@@ -81,6 +82,7 @@ func (s *Station) Changed(w station.What) {
 	s.panel.changed(w)
 	if w.Has(station.Selection) {
 		s.revealSelected()
+		s.findings.follow()
 	}
 	s.bar.reload()
 	if w.Has(station.Model | station.Settings | station.Selection) {
@@ -209,7 +211,7 @@ func (s *Station) bringOptions() {
 	for _, e := range s.editors {
 		e.opt.Palette, e.opt.System, e.opt.Scales = s.ctx.Palette(), s.ctx.System(), s.scales
 		e.opt.Findings = s.findings.marks(e.name)
-		e.opt.Selected = e.selected
+		e.opt.Selected, e.opt.Hide = e.selected, s.hide
 	}
 }
 

@@ -1,0 +1,66 @@
+package sheet
+
+import (
+	"fmt"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/widgets"
+	"barlitre/audit/figures"
+)
+
+// signNames name the switches for scripts.
+var signNames = map[figures.Signs]string{figures.Tint: "tint", figures.Width: "width", figures.Chevrons: "chevrons", figures.Discs: "discs", figures.Numbers: "numbers"}
+
+// openSigns shows the switches of what the sheets show of the results, below their button.
+func (s *Station) openSigns() {
+	w := s.ctx.Window()
+	if w == nil {
+		return
+	}
+	box := container.NewVBox()
+	for _, sign := range figures.AllSigns {
+		c := widgets.Name(widgets.NewCheck(sign.String(), nil), "sheet.sign."+signNames[sign])
+		c.Checked = s.hide&sign == 0
+		c.OnChanged = func(on bool) { s.setSign(sign, on) }
+		box.Add(c)
+	}
+	cycle := widgets.Name(widgets.NewCheck("Heat over the cycle, not at the clock", nil), "sheet.sign.cycle")
+	cycle.Checked = s.energy
+	cycle.OnChanged = s.setEnergy
+	box.Add(cycle)
+	pop := widget.NewPopUp(container.New(inset{6}, box), w.Canvas())
+	at := fyne.CurrentApp().Driver().AbsolutePositionForObject(s.bar.signs)
+	s.popAt(pop, at.AddXY(0, s.bar.signs.Size().Height), pop.MinSize())
+	w.Canvas().Focus(box.Objects[0].(fyne.Focusable))
+}
+
+// setSign shows or hides a sign on both sheets.
+func (s *Station) setSign(sign figures.Signs, on bool) {
+	if on {
+		s.hide &^= sign
+	} else {
+		s.hide |= sign
+	}
+	s.bringOptions()
+	s.bar.reload()
+	for _, e := range s.editors {
+		e.redraw()
+	}
+}
+
+// signsText is what the button of the switches says.
+func (s *Station) signsText() string {
+	n := 0
+	for _, sign := range figures.AllSigns {
+		if s.hide&sign != 0 {
+			n++
+		}
+	}
+	if n == 0 {
+		return "Results shown…"
+	}
+	return fmt.Sprintf("Results shown (%d off)…", n)
+}
