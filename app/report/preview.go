@@ -93,7 +93,8 @@ func (p *preview) turn(by float32) {
 // load lays the report out and draws it, in the background; a later request overtakes it.
 func (p *preview) load() {
 	opt, width := p.options(), widths[p.size]*widgets.Scale()
-	ask := request{p.ctx.Solution(), fmt.Sprint(opt.Without), opt.System, width, p.ctx.Palette()}
+	all, _ := p.ctx.Doc().Solution()
+	ask := request{all, fmt.Sprint(opt.Without), opt.System, width, p.ctx.Palette()}
 	if ask == p.asked && ask.of != nil {
 		p.state()
 		return

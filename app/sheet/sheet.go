@@ -1,6 +1,8 @@
 package sheet
 
 import (
+	"slices"
+
 	"fyne.io/fyne/v2"
 
 	"barlitre/app/station"
@@ -21,14 +23,13 @@ type Station struct {
 	findings *findings
 	edge     *widgets.Figure
 
-	proposal string // name of the chosen proposal, "" = the first
-	energy   bool   // discs show a cycle instead of an instant
-	hide     figures.Signs
-	wide     bool // one sheet in full width, as asked for
-	single   bool // one sheet is shown, asked for or for want of room
-	active   int  // the sheet worked on last
-	fold     fold
-	scales   figures.SheetScales
+	energy bool // discs show a cycle instead of an instant
+	hide   figures.Signs
+	wide   bool // one sheet in full width, as asked for
+	single bool // one sheet is shown, asked for or for want of room
+	active int  // the sheet worked on last
+	fold   fold
+	scales figures.SheetScales
 }
 
 // New makes the station.
@@ -141,8 +142,8 @@ func (s *Station) bringCircuits(model bool) {
 	}
 }
 
-// shown returns the circuits of the two sheets, −1 for none: the first as found,
-// and the chosen proposal. A selected circuit that neither shows becomes the second.
+// shown returns the circuits of the two sheets, −1 for none: the first as found, else
+// the first of all, and the one picked beside it.
 func (s *Station) shown() (left, right int) {
 	file := s.ctx.Doc().File()
 	left, right = -1, -1
@@ -150,19 +151,11 @@ func (s *Station) shown() (left, right int) {
 		return
 	}
 	left = 0
-	for i, c := range file.Circuits {
-		if c.Role == audit.AsFound {
-			left = i
-			break
-		}
+	if base := file.Base(); base != nil {
+		left = slices.IndexFunc(file.Circuits, func(c audit.CircuitEntry) bool { return c.Name == base.Name })
 	}
-	if at, _ := s.ctx.Selected(); at >= 0 && at < len(file.Circuits) && at != left {
-		s.proposal = file.Circuits[at].Name
-	}
-	for i, c := range file.Circuits {
-		if i != left && (right < 0 || c.Name == s.proposal) {
-			right = i
-		}
+	if name := s.ctx.Beside(); name != "" {
+		right = slices.IndexFunc(file.Circuits, func(c audit.CircuitEntry) bool { return c.Name == name })
 	}
 	return
 }

@@ -20,21 +20,24 @@ func (s *Station) openSigns() {
 	if w == nil {
 		return
 	}
-	box := container.NewVBox()
+	box, first := container.NewVBox(), fyne.Focusable(nil)
 	for _, sign := range figures.AllSigns {
 		c := widgets.Name(widgets.NewCheck(sign.String(), nil), "sheet.sign."+signNames[sign])
 		c.Checked = s.hide&sign == 0
 		c.OnChanged = func(on bool) { s.setSign(sign, on) }
-		box.Add(c)
+		if first == nil {
+			first = c
+		}
+		box.Add(container.NewHBox(c)) // no wider than its words, which are what can be pressed
 	}
 	cycle := widgets.Name(widgets.NewCheck("Heat over the cycle, not at the clock", nil), "sheet.sign.cycle")
 	cycle.Checked = s.energy
 	cycle.OnChanged = s.setEnergy
-	box.Add(cycle)
+	box.Add(container.NewHBox(cycle))
 	pop := widget.NewPopUp(container.New(inset{6}, box), w.Canvas())
 	at := fyne.CurrentApp().Driver().AbsolutePositionForObject(s.bar.signs)
 	s.popAt(pop, at.AddXY(0, s.bar.signs.Size().Height), pop.MinSize())
-	w.Canvas().Focus(box.Objects[0].(fyne.Focusable))
+	w.Canvas().Focus(first)
 }
 
 // setSign shows or hides a sign on both sheets.

@@ -61,10 +61,16 @@ type Context interface {
 	Selected() (circuit int, block string)
 	Select(circuit int, block string)
 
+	// Beside is the name of the circuit that stands beside the one as found, "" for none;
+	// of several the user picks one, and all stations follow.
+	Beside() string
+	Pick(circuit string)
+
 	// Solution is the last finished one, nil before the first; it may be of an
-	// older revision (then the frame says "out of date").
+	// older revision (then the frame says "out of date"). It has the circuit as found and
+	// the one beside it; that of the document has all.
 	Solution() *audit.Solution
-	// Report lays the solution out in the user's units, nil before the first solution.
+	// Report lays this solution out in the user's units, nil before the first solution.
 	Report() *audit.Report
 
 	System() units.System
