@@ -24,6 +24,7 @@ type auditCall struct {
 	files          []string
 	set            []string
 	json, csv, pdf string
+	sheets         bool
 	system         units.System
 }
 
@@ -41,25 +42,32 @@ func parseAudit(args []string, errs io.Writer) (auditCall, error) {
 	f.StringVar(&c.json, "json", "", "write the results as JSON to `OUT`; - writes nothing but them to standard output")
 	f.StringVar(&c.csv, "csv", "", "write every time step as CSV into the folder `DIR`")
 	f.StringVar(&c.pdf, "pdf", "", "write the report to `OUT`; with several audit files a folder")
+	f.BoolVar(&c.sheets, "sheets", false, "add each circuit to the report on a page of its own, with a title block")
 	system := f.String("units", "metric", "units of the text and the report: `metric`, us or si")
 	var err error
 	if c.files, err = parseMixed(f, args); err != nil {
 		return c, err
 	}
-	switch *system {
-	case "metric":
-		c.system = units.Metric
-	case "us":
-		c.system = units.US
-	case "si":
-		c.system = units.SI
-	default:
-		return c, fmt.Errorf("-units %s: use metric, us or si", *system)
+	if c.system, err = systemNamed(*system); err != nil {
+		return c, err
 	}
 	if len(c.files) == 0 {
 		return c, errors.New("name at least one audit file")
 	}
 	return c, nil
+}
+
+// systemNamed returns the units of a name on the command line.
+func systemNamed(name string) (units.System, error) {
+	switch name {
+	case "metric":
+		return units.Metric, nil
+	case "us":
+		return units.US, nil
+	case "si":
+		return units.SI, nil
+	}
+	return units.Metric, fmt.Errorf("-units %s: use metric, us or si", name)
 }
 
 // auditFiles solves audit files and writes what was asked for.
@@ -136,7 +144,12 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 	if c.pdf != "" {
 		out := c.pdfPath(path)
 		if err := writeWhole(out, func(w io.Writer) error {
-			return pdf.Write(w, s, pdf.Options{System: c.system, Date: time.Now()})
+			opt := pdf.Options{System: c.system, Date: time.Now()}
+			if c.sheets {
+				v := pdf.BusiestView(s)
+				opt.Sheets = &v
+			}
+			return pdf.Write(w, s, opt)
 		}); err != nil {
 			fmt.Fprintln(errs, "barlitre audit:", err)
 			return nil, exitUnreadable

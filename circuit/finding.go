@@ -66,6 +66,19 @@ func (f Finding) Error() string {
 	return f.Text
 }
 
+// Marked reports whether a finding is of that block and not of all of its kind, so that
+// it is worth a mark where the block is drawn: what stops, what is likely wrong, and a
+// caution that check or a run found there. Notes and general cautions are not.
+func (f *Finding) Marked() bool {
+	switch f.Level {
+	case Stops, Warns:
+		return f.Block != ""
+	case Caution:
+		return f.Block != "" && (f.Cause != "" || f.Time > 0)
+	}
+	return false
+}
+
 // AnyStops reports whether a finding keeps the circuit from being solved.
 func AnyStops(fs []Finding) bool {
 	for _, f := range fs {

@@ -25,6 +25,9 @@ func (f *Frame) Beside() string {
 	return ""
 }
 
+// View returns what the sheets show.
+func (f *Frame) View() *station.View { return &f.view }
+
 // Pick takes another circuit beside the one as found; every station follows.
 func (f *Frame) Pick(circuit string) {
 	if !f.pick(circuit) {

@@ -34,6 +34,7 @@ type Frame struct {
 	circuit  int
 	block    string
 	beside   string // the circuit picked, "" = the first
+	view     station.View
 	player   *player
 	laid     *audit.Report
 	laidOf   *audit.Solution

@@ -44,4 +44,3 @@ func (e *editor) begin(kind string, at [2]float64) (id string, err error) {
 	})
 	return id, err
 }
-

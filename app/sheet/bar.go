@@ -26,7 +26,7 @@ func newBar(s *Station) *bar {
 	b.add = button("sheet.add", func() { s.Act(station.AddBlock) })
 	b.fit = button("sheet.fit", s.fitAll)
 	b.wide = button("sheet.wide", func() { s.setWide(!s.wide) })
-	b.heat = button("sheet.heat", func() { s.setEnergy(!s.energy) })
+	b.heat = button("sheet.heat", func() { s.setEnergy(!s.ctx.View().Cycle) })
 	b.signs = button("sheet.signs", s.openSigns)
 	b.panel = button("sheet.panel", s.togglePanel)
 	b.content = container.New(flow{}, b.add, b.fit, b.wide, b.heat, b.signs, b.panel)
@@ -90,7 +90,7 @@ func (b *bar) reload() {
 		}
 	}
 	set(b.wide, pick(b.s.wide, "Show both sheets (W)", "Show one sheet (W)"))
-	set(b.heat, pick(b.s.energy, "Show heat at the clock", "Show heat over the cycle"))
+	set(b.heat, pick(b.s.ctx.View().Cycle, "Show heat at the clock", "Show heat over the cycle"))
 	set(b.signs, b.s.signsText())
 	set(b.panel, pick(b.s.panelOpen(), "Fold properties", "Show properties"))
 }

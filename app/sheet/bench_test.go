@@ -35,6 +35,7 @@ type bench struct {
 	circuit int
 	block   string
 	picked  string
+	view    station.View
 	dark    bool
 	comma   bool
 	system  units.System
@@ -143,6 +144,7 @@ func (b *bench) Beside() string {
 	}
 	return b.picked
 }
+func (b *bench) View() *station.View { return &b.view }
 func (b *bench) Pick(circuit string) {
 	b.picked, b.circuit, b.block = circuit, -1, ""
 	b.s.Changed(station.Solution | station.Selection)

@@ -90,31 +90,10 @@ func (f *findings) reload() {
 	f.figure.Refresh()
 }
 
-// marks are the worst levels by block of a circuit. Notes are in the list only, and so
-// are cautions about a kind of block, which nearly every block has: what check or a run
-// found of this one has a cause or a time.
-func (f *findings) marks(name string) map[string]circuit.Level {
-	out := map[string]circuit.Level{}
-	for _, g := range f.list {
-		if g.Circuit != name || g.Block == "" || !marked(g) {
-			continue
-		}
-		if _, has := out[g.Block]; !has { // the list begins with the worst
-			out[g.Block] = g.Level
-		}
-	}
-	return out
-}
-
-// marked tells whether a finding stands at its block.
-func marked(g circuit.Finding) bool {
-	return g.Level == circuit.Stops || g.Level == circuit.Warns || g.Level == circuit.Caution && (g.Cause != "" || g.Time > 0)
-}
-
 // of is the place in the list of the worst finding marked at a block, −1 for none.
 func (f *findings) of(circuitName, block string) int {
 	return slices.IndexFunc(f.list, func(g circuit.Finding) bool {
-		return g.Circuit == circuitName && g.Block == block && marked(g)
+		return g.Circuit == circuitName && g.Block == block && g.Marked()
 	})
 }
 

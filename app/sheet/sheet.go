@@ -23,8 +23,6 @@ type Station struct {
 	findings *findings
 	edge     *widgets.Figure
 
-	energy bool // discs show a cycle instead of an instant
-	hide   figures.Signs
 	wide   bool // one sheet in full width, as asked for
 	single bool // one sheet is shown, asked for or for want of room
 	active int  // the sheet worked on last
@@ -190,7 +188,7 @@ func (s *Station) solved(name string) *audit.CircuitRun {
 // bringState gives both sheets the state at the clock.
 func (s *Station) bringState() {
 	for i, e := range s.editors {
-		if run := s.run(i); s.energy {
+		if run := s.run(i); s.ctx.View().Cycle {
 			e.state = figures.OverCycle(run, s.ctx.Clock())
 		} else {
 			e.state = figures.StateAt(run, s.ctx.Clock())
@@ -201,10 +199,11 @@ func (s *Station) bringState() {
 
 // bringOptions gives both sheets one set of scales, colours and units.
 func (s *Station) bringOptions() {
+	marks := figures.Marks(s.findings.list)
 	for _, e := range s.editors {
 		e.opt.Palette, e.opt.System, e.opt.Scales = s.ctx.Palette(), s.ctx.System(), s.scales
-		e.opt.Findings = s.findings.marks(e.name)
-		e.opt.Selected, e.opt.Hide = e.selected, s.hide
+		e.opt.Findings = marks[e.name]
+		e.opt.Selected, e.opt.Hide = e.selected, s.ctx.View().Hide
 	}
 }
 
@@ -248,7 +247,7 @@ func (s *Station) setWide(on bool) {
 
 // setEnergy switches the discs between the instant and the cycle.
 func (s *Station) setEnergy(on bool) {
-	s.energy = on
+	s.ctx.View().Cycle = on
 	s.bringState()
 	s.bar.reload()
 	for _, e := range s.editors {

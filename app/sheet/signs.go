@@ -11,9 +11,6 @@ import (
 	"barlitre/audit/figures"
 )
 
-// signNames name the switches for scripts.
-var signNames = map[figures.Signs]string{figures.Tint: "tint", figures.Width: "width", figures.Chevrons: "chevrons", figures.Discs: "discs", figures.Numbers: "numbers"}
-
 // openSigns shows the switches of what the sheets show of the results, below their button.
 func (s *Station) openSigns() {
 	w := s.ctx.Window()
@@ -22,8 +19,8 @@ func (s *Station) openSigns() {
 	}
 	box, first := container.NewVBox(), fyne.Focusable(nil)
 	for _, sign := range figures.AllSigns {
-		c := widgets.Name(widgets.NewCheck(sign.String(), nil), "sheet.sign."+signNames[sign])
-		c.Checked = s.hide&sign == 0
+		c := widgets.Name(widgets.NewCheck(sign.String(), nil), "sheet.sign."+sign.Word())
+		c.Checked = s.ctx.View().Hide&sign == 0
 		c.OnChanged = func(on bool) { s.setSign(sign, on) }
 		if first == nil {
 			first = c
@@ -31,7 +28,7 @@ func (s *Station) openSigns() {
 		box.Add(container.NewHBox(c)) // no wider than its words, which are what can be pressed
 	}
 	cycle := widgets.Name(widgets.NewCheck("Heat over the cycle, not at the clock", nil), "sheet.sign.cycle")
-	cycle.Checked = s.energy
+	cycle.Checked = s.ctx.View().Cycle
 	cycle.OnChanged = s.setEnergy
 	box.Add(container.NewHBox(cycle))
 	pop := widget.NewPopUp(container.New(inset{6}, box), w.Canvas())
@@ -43,9 +40,9 @@ func (s *Station) openSigns() {
 // setSign shows or hides a sign on both sheets.
 func (s *Station) setSign(sign figures.Signs, on bool) {
 	if on {
-		s.hide &^= sign
+		s.ctx.View().Hide &^= sign
 	} else {
-		s.hide |= sign
+		s.ctx.View().Hide |= sign
 	}
 	s.bringOptions()
 	s.bar.reload()
@@ -58,7 +55,7 @@ func (s *Station) setSign(sign figures.Signs, on bool) {
 func (s *Station) signsText() string {
 	n := 0
 	for _, sign := range figures.AllSigns {
-		if s.hide&sign != 0 {
+		if s.ctx.View().Hide&sign != 0 {
 			n++
 		}
 	}

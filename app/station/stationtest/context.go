@@ -31,6 +31,7 @@ type Context struct {
 	Time      float64
 	At        int // index of the duty
 	Picked    string
+	Seen      station.View
 	Explained []audit.Figure
 	Said      []string
 	Failed    []error
@@ -137,6 +138,9 @@ func (c *Context) Beside() string {
 	}
 	return c.Picked
 }
+
+// View is what the sheets show.
+func (c *Context) View() *station.View { return &c.Seen }
 
 // Pick takes another.
 func (c *Context) Pick(circuit string) { c.Picked = circuit }
