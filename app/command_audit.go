@@ -27,36 +27,32 @@ type auditCall struct {
 	set            []string
 	json, csv, pdf string
 	request        string
+	sheets         bool
 	system         units.System
 }
 
-func parseAudit(args []string, errs io.Writer) (auditCall, error) {
-	var c auditCall
-	f := flag.NewFlagSet("barlitre audit", flag.ContinueOnError)
-	f.SetOutput(errs)
-	f.Func("set", "set `[CIRCUIT/]BLOCK.PARAM=QUANTITY` before solving; may be repeated", func(s string) error {
-		if !strings.Contains(s, "=") {
-			return fmt.Errorf("%q has no =; write BLOCK.PARAM=QUANTITY, such as RV1.crack=\"150 bar\"", s)
-		}
-		c.set = append(c.set, s)
-		return nil
+func parseAudit(args []string, errs io.Writer) (c auditCall, err error) {
+	c.files, c.set, c.system, err = readCall("audit", args, errs, func(f *flag.FlagSet) {
+		f.StringVar(&c.json, "json", "", "write the results as JSON to `OUT`; - writes nothing but them to standard output")
+		f.StringVar(&c.csv, "csv", "", "write every time step as CSV into the folder `DIR`")
+		f.StringVar(&c.pdf, "pdf", "", "write the report to `OUT`; with several audit files a folder")
+		f.StringVar(&c.request, "request", "", "write the cooler request sheet to `OUT`, a .pdf or a .csv; with several audit files a folder")
+		f.BoolVar(&c.sheets, "sheets", false, "add each circuit to the report on a page of its own, with a title block")
 	})
-	f.StringVar(&c.json, "json", "", "write the results as JSON to `OUT`; - writes nothing but them to standard output")
-	f.StringVar(&c.csv, "csv", "", "write every time step as CSV into the folder `DIR`")
-	f.StringVar(&c.pdf, "pdf", "", "write the report to `OUT`; with several audit files a folder")
-	f.StringVar(&c.request, "request", "", "write the cooler request sheet to `OUT`, a .pdf or a .csv; with several audit files a folder")
-	system := f.String("units", "metric", "units of the text and the report: `metric`, us or si")
-	var err error
-	if c.files, err = parseMixed(f, args); err != nil {
-		return c, err
+	return c, err
+}
+
+// systemNamed returns the units of a name on the command line.
+func systemNamed(name string) (units.System, error) {
+	switch name {
+	case "metric":
+		return units.Metric, nil
+	case "us":
+		return units.US, nil
+	case "si":
+		return units.SI, nil
 	}
-	if c.system, err = systemNamed(*system); err != nil {
-		return c, err
-	}
-	if len(c.files) == 0 {
-		return c, errors.New("name at least one audit file")
-	}
-	return c, nil
+	return units.Metric, fmt.Errorf("-units %s: use metric, us or si", name)
 }
 
 // auditFiles solves audit files and writes what was asked for.
@@ -130,6 +126,10 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 		if opt.SiteCheck, err = sitecheck.All(ctx, s, sitecheck.Options{System: c.system, Ladders: ladders}); err != nil {
 			fmt.Fprintf(errs, "barlitre audit: %s: %v\n", path, err)
 			return nil, exitUnreadable
+		}
+		if c.sheets {
+			v := pdf.BusiestView(s)
+			opt.Sheets = &v
 		}
 		if err := writeWhole(out, func(w io.Writer) error {
 			return pdf.Write(w, s, opt)

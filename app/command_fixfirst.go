@@ -26,7 +26,7 @@ func readCall(name string, args []string, errs io.Writer, more func(f *flag.Flag
 		set = append(set, s)
 		return nil
 	})
-	family := f.String("units", "metric", "units of the text: `metric`, us or si")
+	family := f.String("units", "metric", "units of the text and the report: `metric`, us or si")
 	if more != nil {
 		more(f)
 	}
@@ -37,18 +37,6 @@ func readCall(name string, args []string, errs io.Writer, more func(f *flag.Flag
 		err = fmt.Errorf("name at least one audit file")
 	}
 	return files, set, system, err
-}
-
-func systemNamed(name string) (units.System, error) {
-	switch name {
-	case "metric":
-		return units.Metric, nil
-	case "us":
-		return units.US, nil
-	case "si":
-		return units.SI, nil
-	}
-	return units.Metric, fmt.Errorf("-units %s: use metric, us or si", name)
 }
 
 // solveFile reads and solves one audit file; the code says what went wrong, in words on errs.

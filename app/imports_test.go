@@ -44,6 +44,7 @@ var arrows = map[string]arrow{
 	"audit/look":                 {ours: []string{"audit", "circuit", "machines/units"}},
 	"audit/fixfirst":             {ours: []string{"audit", "audit/look", "circuit", "machines", "machines/units"}},
 	"audit/sitecheck":            {ours: []string{"audit", "audit/fixfirst", "audit/look", "circuit", "machines/units"}},
+	"audit/cure":                 {ours: []string{"audit", "circuit", "audit/figures", "machines/units"}},
 }
 
 // forbidden are packages and calls that would make a result hang on the moment or the machine.

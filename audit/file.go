@@ -35,6 +35,7 @@ const Format = "barlitre/1"
 //	format: barlitre/1            needed
 //	title: text
 //	site: {name, customer, author, date, note: text, currency: EUR}
+//	report: {owner, number, revision, approved: text}    for the title block of printed circuits
 //	oil: ...                      needed, see below
 //	air: {temperature: 30 C}      around the tank
 //	heat: {tank_volume: 400 L, cooler: air, cooler_rate: 0.4 kW/K}   optional: tank, cooler, air and shifts
@@ -161,6 +162,7 @@ type File struct {
 	Path  string // where it was read from; "" when it has no file yet
 	Title string
 	Site  Site
+	Issue Issue
 	Oil   Oil
 
 	Air    circuit.Value // K, around the tank
@@ -197,6 +199,14 @@ type File struct {
 type Site struct {
 	Name, Customer, Author, Date, Note string
 	Currency                           string // three letters; that of the energy price when not given
+}
+
+// Issue says what a title block needs besides title, author and date: fields of ISO 7200.
+type Issue struct {
+	Owner    string // legal owner of the drawing; that of the site's customer when not given
+	Number   string // identification number
+	Revision string
+	Approved string // who approved it
 }
 
 // Oil is what the file says of the oil.

@@ -14,7 +14,7 @@ import (
 // prepared by hand. Besides what Set does it
 //
 //   - sets title, the one text that stands by itself;
-//   - adds oil, air, energy or site where the file lacks it;
+//   - adds oil, air, energy, site or report where the file lacks it;
 //   - adds the retrofit_cost of a circuit with its likely cost, and opens one that is a
 //     bare number; the first low or high makes the likely cost the other end;
 //   - empties a text: site.customer and "" leave no customer.

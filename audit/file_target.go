@@ -11,7 +11,7 @@ import (
 )
 
 // textKeys are the keys that take a free text.
-var textKeys = []string{"note", "name", "customer", "author", "date", "currency"}
+var textKeys = []string{"note", "name", "customer", "author", "date", "currency", "owner", "number", "revision", "approved"}
 
 // attributes are what may stand beside the value of a quantity.
 var attributes = []string{"origin", "low", "high", "note"}
@@ -19,6 +19,7 @@ var attributes = []string{"origin", "low", "high", "note"}
 // sections are the parts of a file that Set reaches besides circuits, with their keys.
 var sections = map[string][]string{
 	"site":   {"name", "customer", "author", "date", "note", "currency"},
+	"report": {"owner", "number", "revision", "approved"},
 	"oil":    {"grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100", "specific_heat", "bulk_modulus", "air", "start_temperature"},
 	"air":    {"temperature"},
 	"heat":   heatKeyNames(),
@@ -140,7 +141,7 @@ func (f *File) circuitPlace(target, name string, words []string) ([]place, error
 		strings.Join(circuitKeys, ", "))
 }
 
-// sectionPlace finds a key of site, oil, air or energy.
+// sectionPlace finds a key of site, report, oil, air or energy.
 func (f *File) sectionPlace(target string, words []string) ([]place, error) {
 	known, ok := sections[words[0]]
 	switch {
@@ -154,7 +155,7 @@ func (f *File) sectionPlace(target string, words []string) ([]place, error) {
 		return nil, fmt.Errorf("%s: %s is not in the file; add it there first, as in %s: {%s: ...}", target, words[0], words[0], words[1])
 	}
 	if len(words) == 3 {
-		err := p.beside(target, words[2], words[0] != "site" && !isHeatWord(words))
+		err := p.beside(target, words[2], words[0] != "site" && words[0] != "report" && !isHeatWord(words))
 		return []place{p}, err
 	}
 	return []place{p}, nil

@@ -14,6 +14,7 @@ func (k *checker) safety() {
 			if n := k.of[PortRef{b.ID, "S"}]; n != nil && n.tank == "" && KindNamed(b.Kind).WordOf(b, "both_directions") == "yes" {
 				k.relieved(b, "S", "its other side")
 			}
+			k.relievedAbove(b)
 		case b.Kind == kindCylinder:
 			k.relieved(b, "A", "the bore side")
 			k.relieved(b, "B", "the rod side")
@@ -39,7 +40,7 @@ func (k *checker) relieved(b *Block, port, name string) {
 	if n.src != "" {
 		return
 	}
-	k.say(Caution, b, "", "%s (%s.%s) can be closed off from every relief valve: pressure there has no limit. Put a relief valve on it; who may set it and how is for the maker of the machine and the local rules", name, b.ID, port)
+	k.say(Caution, b, "", "%s (%s.%s) can be closed off from every relief valve: pressure there has no limit. Put a relief valve on it; who may set it and how is for the maker of the machine and the local rules", name, b.ID, port).because(NoRelief, port)
 }
 
 // free lists the ways through parts that cannot close in their free direction.

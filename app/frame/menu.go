@@ -65,7 +65,7 @@ func (f *Frame) buildMenu() {
 	quit.IsQuit = true
 	file := fyne.NewMenu("File", start,
 		item("Open…", key(fyne.KeyO, 0), func() { f.leave(f.askOpen) }), m.recent, fyne.NewMenuItemSeparator(),
-		m.save, item("Save as…", key(fyne.KeyS, fyne.KeyModifierShift), func() { f.saveAs(nil) }), fyne.NewMenuItemSeparator(), quit)
+		m.save, item("Save as…", key(fyne.KeyS, fyne.KeyModifierShift), func() { f.saveAs(nil) }), f.printItems(), fyne.NewMenuItemSeparator(), quit)
 	edit := fyne.NewMenu("Edit", append([]*fyne.MenuItem{m.undo, m.redo, fyne.NewMenuItemSeparator()}, f.editItems()...)...)
 	job := fyne.NewMenu("Job")
 	for i, s := range f.stations {

@@ -99,7 +99,7 @@ func (s *saver) saveFile(what, ext string, write func(io.Writer, *audit.Solution
 			if err != nil {
 				return err
 			}
-			return writeFile(path, func(w io.Writer) error { return write(w, r) })
+			return station.WriteWhole(path, func(w io.Writer) error { return write(w, r) })
 		})
 	}
 	if dir := os.Getenv(saveDirVariable); dir != "" {
@@ -160,7 +160,7 @@ func (s *saver) work(what, where string, do func(ctx context.Context, progress f
 	s.working.Show()
 	s.refresh()
 	s.start(func() {
-		err := guarded(func() error { return do(ctx, s.progress()) })
+		err := station.Guarded(func() error { return do(ctx, s.progress()) })
 		fyne.Do(func() {
 			stop()
 			s.busy = false
@@ -194,14 +194,4 @@ func (s *saver) ended(what, where string, err error) {
 	default:
 		s.ctx.Fail(fmt.Errorf("save %s to %s: %w; nothing was written there, and the audit with its results is still open here", what, where, plain(err)))
 	}
-}
-
-// guarded turns an error of the program itself into one that is said.
-func guarded(do func() error) (err error) {
-	defer func() {
-		if v := recover(); v != nil {
-			err = fmt.Errorf("the program met an error of its own (%v); please report it with this file", v)
-		}
-	}()
-	return do()
 }

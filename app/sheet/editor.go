@@ -83,7 +83,7 @@ func newEditor(s *Station, index int) *editor {
 	e.wire.build(e)
 	e.hover.build(e)
 	e.clip = container.NewClip(e.over)
-	e.copied = widgets.Name(widgets.NewButton("Copy as found to a proposal", e.copyAsFound), fmt.Sprintf("sheet.copy.%d", index))
+	e.copied = widgets.Name(widgets.NewButton("Copy as found to a proposal", s.copyAsFound), fmt.Sprintf("sheet.copy.%d", index))
 	e.copied.Hide()
 	e.ExtendBaseWidget(e)
 	widgets.Name(e, fmt.Sprintf("sheet.%d", index))

@@ -27,7 +27,7 @@ type hover struct {
 	ghosts []*canvas.Rectangle
 }
 
-const hoverLines = 6
+const hoverLines = 10
 
 func (h *hover) build(e *editor) {
 	h.e, h.net = e, -1
@@ -203,7 +203,8 @@ func (e *editor) blockLines(id string) []string {
 	if t := e.heatText(id); t != "" {
 		out = append(out, t)
 	}
-	return out
+	out = append(out, e.valveLines(b)...)
+	return append(out, e.findingLines(id)...)
 }
 
 // heatText is the heat of a block at the clock or over the cycle, "" for none.
@@ -263,7 +264,11 @@ func (e *editor) lineLines(net int) []string {
 	} else {
 		out = append(out, e.shaftLines(ports)...)
 	}
-	return append(out, flows...)
+	out = append(out, flows...)
+	if known {
+		out = append(out, e.velocityLines(ports)...)
+	}
+	return out
 }
 
 // shaftLines tells speed and power of a shaft or an electric line.

@@ -24,12 +24,18 @@ func (e *editor) openRename() {
 		e.s.ctx.Say("Several blocks are selected; select one to rename it.")
 		return
 	}
+	e.askName("Name of the block on the sheet:", ids[0], e.popPlace(), func(id string) bool { return e.rename(ids[0], id) })
+}
+
+// askName asks for a name in a small window; it stays while take does not take it.
+func (e *editor) askName(words, now string, at fyne.Position, take func(string) bool) {
+	w := e.s.ctx.Window()
 	var pop *widget.PopUp
 	var field *keyed
 	field = newKeyed(func(k fyne.KeyName) bool {
 		switch k {
 		case fyne.KeyReturn, fyne.KeyEnter:
-			if !e.rename(ids[0], strings.TrimSpace(field.Text)) {
+			if !take(strings.TrimSpace(field.Text)) {
 				return true // it stays, to be mended
 			}
 		case fyne.KeyEscape:
@@ -40,12 +46,11 @@ func (e *editor) openRename() {
 		e.focus()
 		return true
 	})
-	field.SetText(ids[0])
+	field.SetText(now)
 	widgets.Name(field, "sheet.rename")
-	words := widget.NewLabel("Name of the block on the sheet:")
-	pop = widget.NewPopUp(container.NewVBox(words, field), w.Canvas())
+	pop = widget.NewPopUp(container.NewVBox(widget.NewLabel(words), field), w.Canvas())
 	k := widgets.Scale()
-	e.s.popAt(pop, e.popPlace(), fyne.NewSize(renameWidth*k, pop.MinSize().Height))
+	e.s.popAt(pop, at, fyne.NewSize(renameWidth*k, pop.MinSize().Height))
 	w.Canvas().Focus(field)
 	field.TypedShortcut(&fyne.ShortcutSelectAll{})
 }

@@ -1,6 +1,8 @@
 package sheet
 
 import (
+	"slices"
+
 	"fyne.io/fyne/v2"
 
 	"barlitre/app/station"
@@ -21,13 +23,11 @@ type Station struct {
 	findings *findings
 	edge     *widgets.Figure
 
-	proposal string // name of the chosen proposal, "" = the first
-	energy   bool   // discs show a cycle instead of an instant
-	wide     bool   // one sheet in full width, as asked for
-	single   bool   // one sheet is shown, asked for or for want of room
-	active   int    // the sheet worked on last
-	fold     fold
-	scales   figures.SheetScales
+	wide   bool // one sheet in full width, as asked for
+	single bool // one sheet is shown, asked for or for want of room
+	active int  // the sheet worked on last
+	fold   fold
+	scales figures.SheetScales
 }
 
 // New makes the station.
@@ -81,6 +81,7 @@ func (s *Station) Changed(w station.What) {
 	s.panel.changed(w)
 	if w.Has(station.Selection) {
 		s.revealSelected()
+		s.findings.follow()
 	}
 	s.bar.reload()
 	if w.Has(station.Model | station.Settings | station.Selection) {
@@ -139,8 +140,8 @@ func (s *Station) bringCircuits(model bool) {
 	}
 }
 
-// shown returns the circuits of the two sheets, −1 for none: the first as found,
-// and the chosen proposal. A selected circuit that neither shows becomes the second.
+// shown returns the circuits of the two sheets, −1 for none: the first as found, else
+// the first of all, and the one picked beside it.
 func (s *Station) shown() (left, right int) {
 	file := s.ctx.Doc().File()
 	left, right = -1, -1
@@ -148,19 +149,11 @@ func (s *Station) shown() (left, right int) {
 		return
 	}
 	left = 0
-	for i, c := range file.Circuits {
-		if c.Role == audit.AsFound {
-			left = i
-			break
-		}
+	if base := file.Base(); base != nil {
+		left = slices.IndexFunc(file.Circuits, func(c audit.CircuitEntry) bool { return c.Name == base.Name })
 	}
-	if at, _ := s.ctx.Selected(); at >= 0 && at < len(file.Circuits) && at != left {
-		s.proposal = file.Circuits[at].Name
-	}
-	for i, c := range file.Circuits {
-		if i != left && (right < 0 || c.Name == s.proposal) {
-			right = i
-		}
+	if name := s.ctx.Beside(); name != "" {
+		right = slices.IndexFunc(file.Circuits, func(c audit.CircuitEntry) bool { return c.Name == name })
 	}
 	return
 }
@@ -195,7 +188,7 @@ func (s *Station) solved(name string) *audit.CircuitRun {
 // bringState gives both sheets the state at the clock.
 func (s *Station) bringState() {
 	for i, e := range s.editors {
-		if run := s.run(i); s.energy {
+		if run := s.run(i); s.ctx.View().Cycle {
 			e.state = figures.OverCycle(run, s.ctx.Clock())
 		} else {
 			e.state = figures.StateAt(run, s.ctx.Clock())
@@ -206,10 +199,11 @@ func (s *Station) bringState() {
 
 // bringOptions gives both sheets one set of scales, colours and units.
 func (s *Station) bringOptions() {
+	marks := figures.Marks(s.findings.list)
 	for _, e := range s.editors {
 		e.opt.Palette, e.opt.System, e.opt.Scales = s.ctx.Palette(), s.ctx.System(), s.scales
-		e.opt.Findings = s.findings.marks(e.name)
-		e.opt.Selected = e.selected
+		e.opt.Findings = marks[e.name]
+		e.opt.Selected, e.opt.Hide = e.selected, s.ctx.View().Hide
 	}
 }
 
@@ -253,7 +247,7 @@ func (s *Station) setWide(on bool) {
 
 // setEnergy switches the discs between the instant and the cycle.
 func (s *Station) setEnergy(on bool) {
-	s.energy = on
+	s.ctx.View().Cycle = on
 	s.bringState()
 	s.bar.reload()
 	for _, e := range s.editors {

@@ -46,6 +46,12 @@ type Station interface {
 	Help() string
 }
 
+// View says how sheets show results: by which signs, and of what time their heat is.
+type View struct {
+	Cycle bool          // discs show a cycle instead of an instant
+	Hide  figures.Signs // signs that are left out
+}
+
 // Context is what stations read and act through. The frame implements it.
 type Context interface {
 	Doc() *document.Document
@@ -61,10 +67,19 @@ type Context interface {
 	Selected() (circuit int, block string)
 	Select(circuit int, block string)
 
+	// Beside is the name of the circuit that stands beside the one as found, "" for none;
+	// of several the user picks one, and all stations follow.
+	Beside() string
+	Pick(circuit string)
+
+	// View is what the sheets show of the results, for what prints them as they are seen.
+	View() *View
+
 	// Solution is the last finished one, nil before the first; it may be of an
-	// older revision (then the frame says "out of date").
+	// older revision (then the frame says "out of date"). It has the circuit as found and
+	// the one beside it; that of the document has all.
 	Solution() *audit.Solution
-	// Report lays the solution out in the user's units, nil before the first solution.
+	// Report lays this solution out in the user's units, nil before the first solution.
 	Report() *audit.Report
 
 	System() units.System

@@ -21,6 +21,15 @@ func passHelp(o fyne.CanvasObject, k *fyne.KeyEvent) bool {
 	return true
 }
 
+// passOn hands F1 and Escape on, of widgets that have no use for either.
+func passOn(o fyne.CanvasObject, k *fyne.KeyEvent) bool {
+	if k.Name == fyne.KeyEscape {
+		PassKey(o, k)
+		return true
+	}
+	return passHelp(o, k)
+}
+
 // Button is a button that leaves F1 to the window.
 type Button struct{ widget.Button }
 
@@ -40,7 +49,7 @@ func (b *Button) FocusGained() {
 
 // TypedKey presses by Space.
 func (b *Button) TypedKey(k *fyne.KeyEvent) {
-	if !passHelp(b, k) {
+	if !passOn(b, k) {
 		b.Button.TypedKey(k)
 	}
 }
@@ -67,7 +76,7 @@ func (c *Check) FocusGained() {
 
 // TypedKey leaves F1 to the window.
 func (c *Check) TypedKey(k *fyne.KeyEvent) {
-	if !passHelp(c, k) {
+	if !passOn(c, k) {
 		c.Check.TypedKey(k)
 	}
 }
@@ -100,7 +109,7 @@ func (s *Select) FocusGained() {
 
 // TypedKey leaves F1 to the window.
 func (s *Select) TypedKey(k *fyne.KeyEvent) {
-	if !passHelp(s, k) {
+	if !passOn(s, k) {
 		s.Select.TypedKey(k)
 	}
 }

@@ -39,6 +39,7 @@ type SheetOptions struct {
 	Findings   map[string]circuit.Level
 	Legend     bool // below the sheet, LegendHeight high
 	HideLabels bool
+	Hide       Signs // results that are not shown
 }
 
 // SheetKind says what a region of a sheet shows.
@@ -76,6 +77,7 @@ type sheetDrawing struct {
 	most   float64 // heat of the largest disc
 	now    []netNow
 	stubOf []map[int]bool // by part: pieces drawn as lines
+	bold   float64        // how much wider than usual symbols are drawn; 0 = as usual
 }
 
 // Draw draws the sheet with its upper left corner at (x, y), scale units of p a module,
@@ -163,6 +165,9 @@ func (d *sheetDrawing) highlights() {
 
 // discs draws the heat of the blocks.
 func (d *sheetDrawing) discs() {
+	if d.opt.hides(Discs) {
+		return
+	}
 	for i := range d.parts {
 		p := &d.parts[i]
 		share := ratio(d.st.Heat(p.id), d.most)

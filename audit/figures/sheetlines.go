@@ -11,7 +11,7 @@ import (
 // widthOf is the width of a line with flow q: in proportion to its root, so that the
 // area of the line is to the flow as with round pipes of one velocity.
 func (d *sheetDrawing) widthOf(q float64) float64 {
-	if d.st == nil {
+	if d.st == nil || d.opt.hides(Width) {
 		return symbolLine
 	}
 	return math.Max(lineThin, lineWidest*math.Sqrt(math.Min(1, ratio(math.Abs(q), d.scales.Flow))))
@@ -19,7 +19,7 @@ func (d *sheetDrawing) widthOf(q float64) float64 {
 
 // tintOf is the colour of a line: that of its pressure, ink without a state.
 func (d *sheetDrawing) tintOf(n netNow) color.NRGBA {
-	if !n.known {
+	if !n.known || d.opt.hides(Tint) {
 		return d.pal.Ink
 	}
 	if math.IsNaN(n.pressure) {
@@ -47,7 +47,7 @@ func (d *sheetDrawing) lines() {
 	}
 	for i := range d.stretches {
 		st := &d.stretches[i]
-		if q := st.along(d.now[st.net]); d.flowing(q) {
+		if q := st.along(d.now[st.net]); d.flowing(q) && !d.opt.hides(Chevrons) {
 			for _, c := range d.chevrons(st, q, d.widthOf(q)) {
 				d.chevron(c, d.tintOf(d.now[st.net]))
 			}

@@ -25,6 +25,10 @@ func (d *sheetDrawing) symbols() {
 			if q.Part == "piston" || q.Part == "rod" {
 				q = movedPrim(q, shift)
 			}
+			if q.Part == square && square != "" && (q.Kind != drawing.Poly || q.Filled) {
+				d.inForce(q)
+				continue
+			}
 			d.prim(q)
 		}
 		d.motion(p)
@@ -36,7 +40,7 @@ func (d *sheetDrawing) symbols() {
 
 // prim draws one piece of a symbol.
 func (d *sheetDrawing) prim(q drawing.Prim) {
-	line := dashed(symbolLine, d.pal.Ink, q.Style)
+	line := dashed(symbolLine*max(1, d.bold), d.pal.Ink, q.Style)
 	fill := color.NRGBA{}
 	if q.Filled {
 		fill = d.pal.Ink
@@ -58,6 +62,14 @@ func (d *sheetDrawing) prim(q drawing.Prim) {
 		al := [...]pen.Align{drawing.Middle: pen.Center, drawing.Start: pen.Left, drawing.End: pen.Right}[q.Align]
 		d.p.Text(pen.Pt{X: q.C.X, Y: q.C.Y + capHalf*q.H}, q.Text, q.H, d.pal.Ink, al, false)
 	}
+}
+
+// inForce draws a way through a valve in its present position: bold, in the colour of
+// its square.
+func (d *sheetDrawing) inForce(q drawing.Prim) {
+	bold := sheetDrawing{p: d.p, pal: d.pal, bold: 1.7}
+	bold.pal.Ink = d.pal.Gain
+	bold.prim(q)
 }
 
 // square names the position of a valve that is in force, and its tint: the further open,

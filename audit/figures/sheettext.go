@@ -59,6 +59,9 @@ func (d *sheetDrawing) rest(l *sheetLabel) float64 {
 
 // words is what stands in a row of a label now.
 func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
+	if d.opt.hides(Numbers) && r != rowTag && r != rowTagHeat && r != rowValue {
+		return nil
+	}
 	if l.part < 0 {
 		return d.lineWords(&d.stretches[l.stretch], r)
 	}
@@ -84,7 +87,7 @@ func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
 		}
 		return note(p.live(d.st, d.opt.System))
 	}
-	if p.block.Kind == "valve" && d.st != nil {
+	if p.block.Kind == "valve" && d.st != nil && !d.opt.hides(Numbers) {
 		if text := p.live(d.st, d.opt.System); text != "" {
 			return note(text)
 		}
@@ -95,7 +98,7 @@ func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
 // heatWords is the heat of a block, if it counts among the others.
 func (d *sheetDrawing) heatWords(p *part) []word {
 	h := d.st.Heat(p.id)
-	if p.copied || ratio(h, d.most) < heatShown {
+	if p.copied || ratio(h, d.most) < heatShown || d.opt.hides(Numbers) || d.opt.hides(Discs) {
 		return nil
 	}
 	return []word{{text: heatText(h, d.st.Energy, d.opt.System), size: noteSize, c: d.pal.heatText(), bold: true}}

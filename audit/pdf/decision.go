@@ -50,10 +50,10 @@ func (l *layout) firstPage(starts map[Section]int) {
 // contents names the page of each section. Before they are known it leaves as much room.
 func (l *layout) contents(starts map[Section]int) {
 	var parts []string
-	for _, s := range append(Sections(), cautionPages) {
+	for _, s := range append(Sections(), cautionPages, Sheets) {
 		n, ok := starts[s]
 		switch {
-		case slices.Contains(l.without, s):
+		case slices.Contains(l.without, s), s == Sheets && l.boards == nil:
 			continue
 		case !ok:
 			n = 10

@@ -39,6 +39,10 @@ const (
 	Method     Section = "Method and certificate"
 )
 
+// Sheets is the section of the circuits on pages of their own; it is there when Options
+// ask for it.
+const Sheets Section = "Circuit sheets"
+
 // cautionPages is the section that cannot be left out.
 const cautionPages Section = "Cautions and limits of use"
 
@@ -52,6 +56,7 @@ type Options struct {
 	System  units.System
 	Date    time.Time // of the report, printed and written into the document
 	Without []Section // left out
+	Sheets  *View     // the circuits on pages of their own at the end; nil = none
 
 	FixFirst  []fixfirst.Page   // of the circuits as found; without them their section is left out
 	SiteCheck []*sitecheck.Plan // the same
@@ -66,6 +71,11 @@ func Write(w io.Writer, s *audit.Solution, opt Options) error { return write(w, 
 func write(w io.Writer, s *audit.Solution, opt Options, compress bool) error {
 	if s == nil || s.File == nil {
 		return errors.New("write report: there is no solved audit to print")
+	}
+	if opt.Sheets != nil {
+		if _, err := newBoards(s.File, s, *opt.Sheets, opt); err != nil {
+			return fmt.Errorf("write report: %w", err)
+		}
 	}
 	l := newLayout(s, opt)
 	l.choose()
@@ -88,7 +98,8 @@ func write(w io.Writer, s *audit.Solution, opt Options, compress bool) error {
 
 // paper is what a sheet prints on: the document, or recorders that are measured.
 type paper interface {
-	page() pen.Pen // begins a page
+	page() pen.Pen         // begins an upright A4 page
+	lying(p Paper) pen.Pen // begins a lying page
 	mark(title string, level int, y float64)
 }
 
@@ -133,6 +144,7 @@ type layout struct {
 	total  int             // pages in all, as the last printing found them
 	starts map[Section]int // page on which a section starts
 	drawn  *drawings       // nil before they are asked for
+	boards *boards         // nil when there are none
 
 	pictures map[int][]figures.Picture // of the machines, by circuit
 }
@@ -151,6 +163,9 @@ func newLayout(s *audit.Solution, opt Options) *layout {
 		if *own == "" {
 			*own = file
 		}
+	}
+	if opt.Sheets != nil {
+		l.boards, _ = newBoards(s.File, s, *opt.Sheets, opt)
 	}
 	return l
 }
@@ -228,6 +243,12 @@ func (l *layout) print(to paper) {
 	l.cautions()
 	l.finish()
 	l.total = l.number
+	if l.boards != nil {
+		l.starts[Sheets] = l.number + 1
+		l.total += len(l.boards.all)
+		l.boards.before, l.boards.pages = l.number, l.total
+		l.boards.print(to)
+	}
 }
 
 // follow returns the height of what stays with the heading of a section.

@@ -3,6 +3,7 @@
 package stationtest
 
 import (
+	"slices"
 	"strings"
 	"testing"
 	"time"
@@ -29,6 +30,8 @@ type Context struct {
 	Dark      bool
 	Time      float64
 	At        int // index of the duty
+	Picked    string
+	Seen      station.View
 	Explained []audit.Figure
 	Said      []string
 	Failed    []error
@@ -127,10 +130,25 @@ func (c *Context) Say(text string)          { c.Said = append(c.Said, text) }
 func (c *Context) Fail(err error)           { c.Failed = append(c.Failed, err) }
 func (c *Context) Palette() figures.Palette { return widgets.Theme{Dark: c.Dark}.Palette() }
 
-// Solution is that of the document.
+// Beside is the circuit picked, else the first there is.
+func (c *Context) Beside() string {
+	names := c.Document.File().Besides()
+	if len(names) > 0 && !slices.Contains(names, c.Picked) {
+		return names[0]
+	}
+	return c.Picked
+}
+
+// View is what the sheets show.
+func (c *Context) View() *station.View { return &c.Seen }
+
+// Pick takes another.
+func (c *Context) Pick(circuit string) { c.Picked = circuit }
+
+// Solution is that of the document, of two circuits.
 func (c *Context) Solution() *audit.Solution {
 	s, _ := c.Document.Solution()
-	return s
+	return s.Beside(c.Beside())
 }
 
 // Report lays it out.
