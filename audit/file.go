@@ -24,7 +24,7 @@ const Format = "barlitre/1"
 // says why. Values are changed by Set, Put, Clear and SetPoint; a sheet is drawn by
 // AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, SetAt, Rotate, Mirror,
 // AddNote and AddGroup; AddCircuit, CopyCircuit and SwapRoles make and exchange
-// sheets; AddAxis, AddDuty, AddTrack, AddRow and SetDuty say what the machine does.
+// sheets; AddAxis, AddDuty, AddTrack, AddRow, SetTable and SetDuty say what the machine does.
 //
 // # Format
 //
@@ -43,7 +43,7 @@ const Format = "barlitre/1"
 //	         co2_basis: location | market, credit_returned: no,
 //	         fuel_price: 1.6 EUR/L, fuel_co2: 2.66 kg/L,
 //	         fuel_density: 0.83 kg/L, fuel_heating_value: 43.0 MJ/kg}
-//	axes: {ram: linear, drum: rotary}
+//	axes: {ram: linear, drum: {kind: rotary, load: hook and container}}
 //	duties:                       a list, needed
 //	circuits:                     a list, needed
 //

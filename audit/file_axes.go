@@ -1,6 +1,7 @@
 package audit
 
 import (
+	"errors"
 	"fmt"
 	"slices"
 	"strings"
@@ -84,6 +85,59 @@ func (f *File) RenameAxis(old, name string) error {
 		return err
 	}
 	return f.take("axis "+old, d, func(g *File) bool { return g.isAxis(name) && !g.isAxis(old) })
+}
+
+// SetAxisKind makes an axis linear or rotary, as long as no track is written in its units.
+func (f *File) SetAxisKind(name string, kind duty.AxisKind) error {
+	i, err := f.axisAt(name)
+	if err != nil {
+		return err
+	}
+	d := f.draft()
+	m, key := child(d.root, "axes"), name
+	if v := child(m, name); v != nil && v.Kind == yaml.MappingNode {
+		m, key = v, "kind"
+	}
+	if err := d.one(d.src.put(m, key, kind.String())); err != nil {
+		return fmt.Errorf("axis %s: %w", name, err)
+	}
+	return f.take("axis "+name, d, func(g *File) bool { return g.Axes[i].Kind == kind })
+}
+
+// SetAxisLoad says what stands at the load side of an axis; "" takes it out.
+func (f *File) SetAxisLoad(name, load string) error {
+	i, err := f.axisAt(name)
+	if err != nil {
+		return err
+	}
+	load = oneLine(load)
+	d := f.draft()
+	v := child(child(d.root, "axes"), name)
+	switch {
+	case load == f.Axes[i].Load:
+		return nil
+	case v.Kind != yaml.MappingNode:
+		text := "{kind: " + f.Axes[i].Kind.String() + ", load: " + encode(load, true) + "}"
+		from, e := d.src.start(v)
+		to, e2 := d.src.end(v, child(d.root, "axes").Column-1)
+		err = d.one(splice{from, to, text}, errors.Join(e, e2))
+	case load == "":
+		err = d.cutKey(v, "load")
+	default:
+		err = d.one(d.src.put(v, "load", encode(load, true)))
+	}
+	if err != nil {
+		return fmt.Errorf("axis %s: %w", name, err)
+	}
+	return f.take("axis "+name, d, func(g *File) bool { return g.Axes[i].Load == load })
+}
+
+// axisAt is the place of an axis in Axes.
+func (f *File) axisAt(name string) (int, error) {
+	if err := f.knownAxis(name); err != nil {
+		return -1, err
+	}
+	return slices.IndexFunc(f.Axes, func(a duty.Axis) bool { return a.Name == name }), nil
 }
 
 // RemoveAxis takes an axis out that no block and no track names any more.

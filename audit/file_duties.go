@@ -49,6 +49,36 @@ func (f *File) RenameDuty(old, name string) error {
 	return f.dutyEdit(d, i, d.one(d.src.put(d.duty(i), "name", encode(name, true))), func(g *File) bool { return g.dutyIndex(name) == i })
 }
 
+// CopyDuty adds a duty that begins as a copy of another, without its hours: two duties
+// do not run in the same ones.
+func (f *File) CopyDuty(from, name string) error {
+	i, err := f.dutyNamed(from)
+	if err != nil {
+		return err
+	}
+	if name = oneLine(name); f.mayBeDuty(name) != nil {
+		return f.mayBeDuty(name)
+	}
+	d, last := f.draft(), len(f.Duties)
+	list := child(d.root, "duties")
+	text, err := d.src.itemText(list, i)
+	if err == nil {
+		err = d.one(d.src.attach(list, text))
+	}
+	if err == nil {
+		err = d.one(d.src.put(d.duty(last), "name", encode(name, true)))
+	}
+	if err == nil && child(d.duty(last), "hours") != nil {
+		err = d.cutKey(d.duty(last), "hours")
+	}
+	if err != nil {
+		return fmt.Errorf("duty %q: %w", name, err)
+	}
+	return f.take(name, d, func(g *File) bool {
+		return len(g.Duties) == last+1 && g.Duties[last].Name == name && len(g.Duties[last].Time) == len(f.Duties[i].Time)
+	})
+}
+
 // RemoveDuty takes a duty out.
 func (f *File) RemoveDuty(name string) error {
 	i, err := f.dutyNamed(name)
@@ -63,17 +93,24 @@ func (f *File) RemoveDuty(name string) error {
 // dutyKeys are what SetDuty reaches.
 var dutyKeys = []string{"hours", "repeats", "step", "instants", "note"}
 
-// SetDuty sets what a duty has besides its table: hours, repeats, step, instants, note.
+// SetDuty sets what a duty has besides its table: hours, repeats, step, instants, note;
+// "" takes it out.
 func (f *File) SetDuty(name, key, value string) error {
 	i, err := f.dutyNamed(name)
 	if err != nil {
 		return err
 	}
 	value = strings.TrimSpace(value)
-	if !slices.Contains(dutyKeys, key) || value == "" {
-		return fmt.Errorf("duty %q: %s: give one of %s, and its value", name, key, strings.Join(dutyKeys, ", "))
+	if !slices.Contains(dutyKeys, key) {
+		return fmt.Errorf("duty %q: %s: give one of %s", name, key, strings.Join(dutyKeys, ", "))
 	}
 	d := f.draft()
+	if value == "" {
+		if child(d.duty(i), key) == nil {
+			return nil
+		}
+		return f.dutyEdit(d, i, d.cutKey(d.duty(i), key), func(g *File) bool { return child(g.dutyNode(i), key) == nil })
+	}
 	err = d.one(d.src.put(d.duty(i), key, encode(value, key == "note")))
 	return f.dutyEdit(d, i, err, func(g *File) bool {
 		return written(child(child(g.dutyNode(i), key), "value"), child(g.dutyNode(i), key)) == value

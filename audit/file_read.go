@@ -143,11 +143,19 @@ func (r *reader) axisNames(n *yaml.Node) {
 		if !r.id(s, e.at, "axis") {
 			continue
 		}
-		kind := r.word(s, map[string]entry{e.key: e}, e.key, axisKinds...)
+		a := duty.Axis{Name: e.key, Kind: duty.Linear}
+		f, at, key := map[string]entry{e.key: e}, s, e.key
+		if e.value.Kind == yaml.MappingNode {
+			f, at, key = r.fields(s, e.value, e.key, "kind", "load"), s.in(e.key), "kind"
+			a.Load = r.text(at, f, "load")
+			if _, ok := f["kind"]; !ok {
+				r.bad(at, e.at, "kind", "is missing; write linear or rotary")
+			}
+		}
+		kind := r.word(at, f, key, axisKinds...)
 		if kind == "" {
 			continue
 		}
-		a := duty.Axis{Name: e.key, Kind: duty.Linear}
 		if kind == duty.Rotary.String() {
 			a.Kind = duty.Rotary
 		}

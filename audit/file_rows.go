@@ -154,6 +154,24 @@ func (f *File) RemoveRow(dutyName string, row int) error {
 	return f.dutyEdit(d, i, nil, func(g *File) bool { return len(g.Duties[i].Time) == n-1 })
 }
 
+// Table returns the table of a duty as it is written: heads such as "t" and
+// "ram.speed [m/s]", and the values of each column.
+func (f *File) Table(dutyName string) (heads []string, columns [][]string, err error) {
+	i, d, err := f.typedDuty(dutyName)
+	if err != nil {
+		return nil, nil, err
+	}
+	points := child(d.duty(i), "points")
+	for k, key := range mappingKeys(points) {
+		var column []string
+		for _, n := range points.Content[2*k+1].Content {
+			column = append(column, n.Value)
+		}
+		heads, columns = append(heads, key.Value), append(columns, column)
+	}
+	return heads, columns, nil
+}
+
 // SetTable writes the whole table of a duty: heads such as "t", "ram.speed [m/s]" and
 // the values of each column. A column that stays keeps its place and comments.
 func (f *File) SetTable(dutyName string, heads []string, columns [][]string) error {
@@ -169,12 +187,17 @@ func (f *File) SetTable(dutyName string, heads []string, columns [][]string) err
 	var splices []splice
 	var added []string
 	for k, head := range heads {
+		name, unit, _ := recording.SplitHead(head)
+		dim, _ := f.trackQuantity(name)
 		var words []string
 		for _, v := range columns[k] {
-			words = append(words, encode(strings.TrimSpace(v), false))
+			v = strings.TrimSpace(v)
+			if text, _, err := point(v, unit, dim); err == nil {
+				v = text // in the unit of its head
+			}
+			words = append(words, encode(v, false))
 		}
 		text := "[" + strings.Join(words, ", ") + "]"
-		name, _, _ := recording.SplitHead(head)
 		old := slices.IndexFunc(mappingKeys(points), func(n *yaml.Node) bool { was, _, _ := recording.SplitHead(n.Value); return was == name })
 		if old < 0 {
 			added = append(added, encode(head, true)+": "+text)

@@ -2,6 +2,7 @@ package audit
 
 import (
 	"bytes"
+	"fmt"
 	"strings"
 	"testing"
 
@@ -99,6 +100,48 @@ func TestAxes(t *testing.T) {
 	f = mustParse(t, "format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\nduties: [{name: d, points: {t: [0 s, 1 s]}}]\ncircuits: [{name: a}]\n")
 	if err := f.AddAxis("ram", duty.Linear); err != nil || !strings.HasSuffix(string(f.Bytes()), "\naxes: {ram: linear}\n") {
 		t.Errorf("%v\n%s", err, f.Bytes())
+	}
+}
+
+// What stands at the load side is kept beside the kind of an axis.
+func TestAxisLoadSide(t *testing.T) {
+	f := sheetFile(t)
+	becomes(t, f, f.SetAxisLoad("ram", " platen, and bale "), "{ram: linear}", `{ram: {kind: linear, load: "platen, and bale"}}`)
+	if got := f.Axes[0].Load; got != "platen, and bale" {
+		t.Errorf("load side %q", got)
+	}
+	becomes(t, f, f.SetAxisLoad("ram", "platen"), "{ram: linear}", "{ram: {kind: linear, load: \"platen\"}}")
+	becomes(t, f, f.SetAxisLoad("ram", ""), "{ram: linear}", "{ram: {kind: linear}}")
+	becomes(t, f, f.AddAxis("drum", duty.Linear), "{ram: linear}", "{ram: {kind: linear}, drum: linear}")
+	becomes(t, f, f.SetAxisKind("drum", duty.Rotary), "{ram: linear}", "{ram: {kind: linear}, drum: rotary}")
+	if err := f.SetAxisKind("ram", duty.Rotary); err == nil || f.Axes[0].Kind != duty.Linear {
+		t.Errorf("ram has a speed in m/s and became rotary: %v", err)
+	}
+	if err := f.SetAxisLoad("sled", "x"); err == nil || !strings.Contains(err.Error(), `no axis "sled"`) {
+		t.Error(err)
+	}
+	_, found := Parse([]byte("format: barlitre/1\naxes: {ram: {load: x}, drum: {kind: round}, arm: {kind: linear, mass: 3}}\n"), nil, "")
+	for _, want := range []string{"axes.ram.kind: is missing", `axes.drum.kind: is "round"`, "axes.arm.mass: unknown key"} {
+		if !strings.Contains(fmt.Sprint(found), want) {
+			t.Errorf("no %q in %v", want, found)
+		}
+	}
+}
+
+// A copy of a duty has its points and comments, but not its hours.
+func TestCopyDuty(t *testing.T) {
+	f := sheetFile(t)
+	if err := f.SetDuty("cycle", "hours", "300 h"); err != nil {
+		t.Fatal(err)
+	}
+	points := "  points:\n    t: [0 s, 1 s]\n    ram.speed: [0 m/s, 0.1 m/s]   # v\n    V1.command: [0, 1]\n"
+	becomes(t, f, f.CopyDuty("cycle", "night"), points, points+"  hours: 300 h\n- name: night # d\n"+points)
+	if err := f.CopyDuty("cycle", "night"); err == nil || !strings.Contains(err.Error(), "already") {
+		t.Error(err)
+	}
+	heads, columns, err := f.Table("night")
+	if fmt.Sprint(heads, columns, err) != "[t ram.speed V1.command] [[0 s 1 s] [0 m/s 0.1 m/s] [0 1]] <nil>" {
+		t.Error(heads, columns, err)
 	}
 }
 

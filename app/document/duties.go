@@ -16,6 +16,11 @@ func (d *Document) RenameDuty(old, name string) error {
 	return d.Edit("Rename duty "+old, func(f *audit.File) error { return f.RenameDuty(old, name) })
 }
 
+// CopyDuty adds a duty that begins as a copy of another.
+func (d *Document) CopyDuty(from, name string) error {
+	return d.Edit("Duplicate duty "+from, func(f *audit.File) error { return f.CopyDuty(from, name) })
+}
+
 // RemoveDuty takes a duty out.
 func (d *Document) RemoveDuty(name string) error {
 	return d.Edit("Remove duty "+name, func(f *audit.File) error { return f.RemoveDuty(name) })

@@ -78,6 +78,16 @@ func (d *Document) RenameAxis(old, name string) error {
 	return d.Edit("Rename axis "+old, func(f *audit.File) error { return f.RenameAxis(old, name) })
 }
 
+// SetAxisKind makes an axis linear or rotary.
+func (d *Document) SetAxisKind(name string, kind duty.AxisKind) error {
+	return d.Edit("Change kind of axis "+name, func(f *audit.File) error { return f.SetAxisKind(name, kind) })
+}
+
+// SetAxisLoad says what stands at the load side of an axis.
+func (d *Document) SetAxisLoad(name, load string) error {
+	return d.Edit("Change load side of axis "+name, func(f *audit.File) error { return f.SetAxisLoad(name, load) })
+}
+
 // RemoveAxis takes an axis out that nothing names any more.
 func (d *Document) RemoveAxis(name string) error {
 	return d.Edit("Remove axis "+name, func(f *audit.File) error { return f.RemoveAxis(name) })

@@ -32,6 +32,8 @@ type Station struct {
 	table   *widgets.Table
 	refusal *widget.Label
 	notes   *fyne.Container
+	panel   *panel
+	pages   *pages
 	ground  *canvas.Rectangle
 	loading bool
 
@@ -68,32 +70,37 @@ func (s *Station) build() {
 	s.plot = widgets.Name(widgets.NewClockPlot(fyne.NewSize(300, 120), s.ctx.Palette), "duty.plot")
 	s.plot.Moved = s.ctx.SetClock
 	s.plot.Value = s.valueAt
+	s.plot.Points = plotPoints{s}
 	s.plot.Format = func(t float64) string { return s.ctx.Text(t, units.Time, 4) }
 	s.refusal = widgets.Name(widget.NewLabel(""), "duty.refusal")
 	s.refusal.Wrapping = fyne.TextWrapWord
 	s.refusal.Importance = widget.LowImportance
 	s.table = widgets.Name(s.newTable(), "duty.table")
 	s.notes = container.NewVBox()
+	s.panel = newPanel(s)
+	s.pages = newPages(s)
 	s.ground = canvas.NewRectangle(s.ctx.Palette().Card)
 	s.filled = s.lay()
-	s.empty = container.NewCenter(widgets.Name(widget.NewLabelWithStyle(
+	empty := widgets.Name(widget.NewLabelWithStyle(
 		"No duty yet. A duty says what each axis must do over time: how fast, against which load, how many hours a year.\n"+
-			"Write it under “duties:” in the audit file, as rows of points or with the name of a CSV file that a logger wrote.",
-		fyne.TextAlignCenter, fyne.TextStyle{}), "duty.empty"))
-	s.content = container.NewStack(s.filled, s.empty)
+			"Add one here with New duty, after the axes of the machine are named.",
+		fyne.TextAlignCenter, fyne.TextStyle{}), "duty.empty")
+	empty.Wrapping = fyne.TextWrapWord
+	s.empty = container.NewPadded(empty)
+	side := container.NewVScroll(container.New(besideBar{}, s.panel.content))
+	split := container.NewHSplit(container.NewStack(s.filled, s.empty), side)
+	split.Offset = 0.7
+	s.content = widgets.Spaced(split)
 }
 
-// lay puts the parts together.
+// lay puts the parts of a duty together.
 func (s *Station) lay() fyne.CanvasObject {
 	pick := container.New(widgets.Wide(220), s.picker)
 	head := container.NewBorder(nil, nil, pick, nil, s.facts)
 	plot := container.NewStack(s.ground, container.NewVScroll(widgets.Spaced(s.plot)))
-	table := container.NewBorder(nil, s.refusal, nil, nil, s.table)
-	lower := container.NewHSplit(table, container.NewVScroll(s.notes))
-	lower.Offset = 0.68
-	both := container.NewVSplit(plot, lower)
-	both.Offset = 0.54
-	return widgets.Spaced(container.NewBorder(head, nil, nil, nil, both))
+	both := container.NewVSplit(plot, s.pages.content)
+	both.Offset = 0.5
+	return container.NewBorder(head, nil, nil, nil, both)
 }
 
 // Changed shows what changed.
@@ -131,13 +138,14 @@ func (s *Station) recorded() audit.Source {
 func (s *Station) reload() {
 	d := s.current()
 	s.shown = d
+	show(s.filled, d != nil)
+	show(s.empty, d == nil)
 	if d == nil {
-		s.filled.Hide()
-		s.empty.Show()
+		s.tracks, s.of = nil, ""
+		s.notes.Objects = nil
+		s.panel.fill()
 		return
 	}
-	s.empty.Hide()
-	s.filled.Show()
 	s.fillPicker()
 	s.tracks = s.tracksOf(d)
 	setText(s.facts, s.factsOf(d))
@@ -145,7 +153,9 @@ func (s *Station) reload() {
 	s.ground.Refresh()
 	s.fillPlot(d)
 	s.fillTable(d)
+	s.pages.fill()
 	s.fillNotes()
+	s.panel.fill()
 }
 
 func setText(l *widget.Label, text string) {
@@ -194,6 +204,14 @@ func (s *Station) factsOf(d *cycle.Duty) string {
 	return strings.Join(parts, "  ·  ")
 }
 
+// locked says why the points of the duty at hand cannot be changed here, "" if they can.
+func (s *Station) locked() string {
+	if src := s.recorded().File; src != "" {
+		return "read from " + src + "; change it there"
+	}
+	return ""
+}
+
 // sourceOf says where the points of a recorded duty come from, "" for others.
 func (s *Station) sourceOf(d *cycle.Duty) string {
 	src := s.recorded()
@@ -224,6 +242,10 @@ func (s *Station) Help() string {
 		"The table holds the points: one row a time stamp, one column a track, linear in between; two rows with one time are a step. Click a cell twice, or press Enter or F2, or just type. " +
 		"A bare number is in the unit of the column; another unit may be typed with it, such as “150 mm/s”. Decimal comma and point are both understood. " +
 		"Enter takes the value; Escape brings the old one back. What is refused stays in its cell, marked, with the reason below. A block of cells can be pasted from a spreadsheet.\n\n" +
-		"Speed above zero extends a cylinder or hoists; a load above zero resists that. A duty that was read from a CSV file is changed in that file. Hours, step and phases are changed in the audit file.\n\n" +
+		"The empty row at the end takes a new time stamp; Insert puts a row below the selected one, half way to the next, Delete takes it out. A pasted block that is longer than the table adds rows. " +
+		"With few points the plot shows them as dots: drag one, with Shift in one direction only; a double click in a lane adds one, Delete takes the last one that was touched out.\n\n" +
+		"On the right: name, hours a year and time step of the duty, and whether it repeats. Below, the axes of the machine: name one and press Enter, say what it moves, and tick what the duty gives of it. Of speed or position, load, and command exactly two are given; the balance finds the third. " +
+		"Everything here is one step of undo.\n\n" +
+		"Speed above zero extends a cylinder or hoists; a load above zero resists that. A duty that was read from a CSV file is changed in that file.\n\n" +
 		"The notes tell whether the strokes close, below which speed an axis counts as standing, and what was found."
 }

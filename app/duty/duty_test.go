@@ -35,8 +35,9 @@ func shown(t *testing.T, text string, files map[string]string) (*stationtest.Fra
 // press clicks a cell of the table as a mouse does.
 func press(t *testing.T, f *stationtest.Frame, table *widgets.Table, name string) {
 	t.Helper()
-	for _, p := range table.Parts() {
-		if p.Name == name {
+	parts := table.Parts()
+	for i, p := range parts {
+		if p.Name == name || strings.HasPrefix(name, "last.") && i >= len(parts)-3 && strings.HasSuffix(p.Name, name[4:]) {
 			at := fyne.NewPos(float32(p.X+p.W/2), float32(p.Y+p.H/2))
 			table.MouseDown(&desktop.MouseEvent{PointEvent: fyne.PointEvent{Position: at}, Button: desktop.MouseButtonPrimary})
 			table.MouseUp(nil)
@@ -149,8 +150,9 @@ func TestRefusalsStay(t *testing.T) {
 
 func cellText(t *testing.T, table *widgets.Table, name string) string {
 	t.Helper()
-	for _, p := range table.Parts() {
-		if p.Name == name {
+	parts := table.Parts()
+	for i, p := range parts {
+		if p.Name == name || strings.HasPrefix(name, "last.") && i >= len(parts)-3 && strings.HasSuffix(p.Name, name[4:]) {
 			return p.Text
 		}
 	}
@@ -239,7 +241,7 @@ func TestRecordedDutyIsReadOnly(t *testing.T) {
 func TestClockFollows(t *testing.T) {
 	f, s := shown(t, sample(t, "baling-press.yaml"), nil)
 	parts := s.plot.Parts()
-	if len(parts) != 2 || parts[0].Name != "ram speed" || parts[1].Name != "ram load" {
+	if len(parts) != 2+2*14 || parts[0].Name != "ram speed" || parts[1].Name != "ram load" {
 		t.Fatalf("lanes %v", parts)
 	}
 	mid := parts[0]
@@ -282,7 +284,7 @@ func TestPickerAndMend(t *testing.T) {
 		t.Errorf("the sample has a duty to mend: %v", f.Document.Findings())
 	}
 	s.picker.SetSelectedIndex(1)
-	if f.At != 1 || s.table.Rows() != 2 || !strings.Contains(s.facts.Text, "1200\u202fh a year") {
+	if f.At != 1 || s.table.Rows() != 3 || !strings.Contains(s.facts.Text, "1200\u202fh a year") {
 		t.Errorf("duty %d, %d rows, %q", f.At, s.table.Rows(), s.facts.Text)
 	}
 	bad := strings.Replace(sample(t, "baling-press.yaml"), "ram.load: [0 kN, 0 kN]}", "ram.load: [0 kN]}", 1)

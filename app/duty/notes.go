@@ -45,9 +45,6 @@ func (s *Station) fillNotes() {
 	for _, text := range s.standstill(d) {
 		s.note("standstill."+text[0], text[1], widget.MediumImportance, false)
 	}
-	if s.recorded().File == "" {
-		s.note("fixed", "Hours, step and phases stand in the audit file and are changed there.", widget.LowImportance, false)
-	}
 	s.notes.Refresh()
 }
 

@@ -8,7 +8,6 @@ import (
 	"fyne.io/fyne/v2"
 
 	"barlitre/app/widgets"
-	"barlitre/audit"
 	cycle "barlitre/circuit/duty"
 	"barlitre/machines/units"
 )
@@ -19,9 +18,15 @@ func (s *Station) newTable() *widgets.Table {
 	t.Note = s.refusal
 	t.Empty = "This duty has no points."
 	t.Editable = func(row, col int) bool {
-		return s.recorded().File == "" && col < len(s.tracks) && row < len(s.tracks[col].values)
+		return s.locked() == "" && col < len(s.tracks) && (row < len(s.tracks[col].values) || row == len(s.shown.Time))
 	}
-	t.EditText = func(row, col int) string { return s.ctx.Local(plain(s.tracks[col], row)) }
+	t.EditText = func(row, col int) string {
+		if row >= len(s.tracks[col].values) {
+			return ""
+		}
+		return s.ctx.Local(plain(s.tracks[col], row))
+	}
+	t.Key = s.rowKey
 	t.Commit = s.commit
 	t.Paste = s.paste
 	t.Hint = s.hint
@@ -47,8 +52,15 @@ func (s *Station) fillTable(d *cycle.Duty) {
 	for c, k := range tracks {
 		places[c] = decimals(k)
 	}
-	s.table.SetData(cols, len(d.Time), func(r int) widgets.TableRow {
+	rows := len(d.Time)
+	if s.locked() == "" {
+		rows++ // an empty one takes what is added
+	}
+	s.table.SetData(cols, rows, func(r int) widgets.TableRow {
 		row := widgets.TableRow{}
+		if r == len(d.Time) {
+			return row
+		}
 		for c, k := range tracks {
 			text := "–" // a column too short
 			if r < len(k.values) {
@@ -114,51 +126,15 @@ func written(k track, text string) (string, error) {
 	return units.FileText(si, u), nil
 }
 
-// commit sends one cell to the file.
-func (s *Station) commit(row, col int, text string) error {
-	quantity, err := written(s.tracks[col], text)
-	if err != nil {
-		return err
-	}
-	return s.ctx.Doc().SetPoint(s.shown.Name, s.tracks[col].name, row, quantity)
-}
-
-// paste sends a block to the file, as one step of undo: all of it or nothing.
-func (s *Station) paste(row, col int, block [][]string) {
-	if src := s.recorded().File; src != "" {
-		s.ctx.Fail(fmt.Errorf("paste: the duty is read from %s; change it there. Nothing was changed", src))
-		return
-	}
-	name, tracks := s.shown.Name, s.tracks
-	err := s.ctx.Doc().Edit("Paste into "+name, func(f *audit.File) error {
-		for r, cells := range block {
-			for c, text := range cells {
-				if row+r >= len(s.shown.Time) || col+c >= len(tracks) {
-					return fmt.Errorf("the block has %d rows and %d columns and does not fit from row %d, %s, on", len(block), len(cells), row+1, tracks[col].name)
-				}
-				quantity, err := written(tracks[col+c], text)
-				if err == nil {
-					err = f.SetPoint(name, tracks[col+c].name, row+r, quantity)
-				}
-				if err != nil {
-					return fmt.Errorf("row %d, %s: %w", row+r+1, tracks[col+c].name, err)
-				}
-			}
-		}
-		return nil
-	})
-	if err != nil {
-		s.ctx.Fail(fmt.Errorf("paste: %w. Nothing was changed", err))
-	}
-}
-
 // hint says what the selected cell takes.
 func (s *Station) hint(row, col int) string {
 	switch {
 	case row < 0 || col < 0 || col >= len(s.tracks):
 		return "Select a cell and type. Between rows all is linear; two rows with one time are a step."
-	case s.recorded().File != "":
-		return "Read from " + s.recorded().File + ", so it cannot be changed here."
+	case s.locked() != "":
+		return "These points are " + s.locked() + "."
+	case s.shown != nil && row == len(s.shown.Time):
+		return fmt.Sprintf("Type here to add a row: %s in %s. Without a time of its own it comes as long after the last one as that after the one before.", s.tracks[col].name, unitWord(s.tracks[col].unit))
 	}
 	k := s.tracks[col]
 	return fmt.Sprintf("Row %d, %s in %s. Type a number, or one with another unit; Enter takes it, Escape does not.", row+1, k.name, unitWord(k.unit))

@@ -108,6 +108,9 @@ func (f *Frame) build() {
 // show brings a station into the window; the others are not in it, so that the toolkit
 // spends no time on them.
 func (f *Frame) show(i int) {
+	if i != f.current {
+		f.win.Canvas().Unfocus() // the keys would go to what is no longer seen
+	}
 	f.current = i
 	f.body.RemoveAll()
 	f.body.Add(f.stations[i].Content())

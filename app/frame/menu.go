@@ -48,7 +48,7 @@ func (f *Frame) buildMenu() {
 	}
 	m := &f.menu
 	start := fyne.NewMenuItem("New", nil)
-	start.ChildMenu = fyne.NewMenu("", item("Empty circuit", nil, func() { f.leave(f.openEmpty) }), fyne.NewMenuItemSeparator())
+	start.ChildMenu = fyne.NewMenu("", item("Empty circuit", key(fyne.KeyN, 0), func() { f.leave(f.openEmpty) }), fyne.NewMenuItemSeparator())
 	for _, s := range samples.Starters() {
 		start.ChildMenu.Items = append(start.ChildMenu.Items, item(s.Title, nil, func() { f.leave(func() { f.openStarter(s) }) }))
 	}
@@ -188,6 +188,11 @@ func (f *Frame) shortcuts() {
 			if !f.escape() {
 				f.player.stop()
 			}
+		}
+	})
+	f.win.Canvas().SetOnTypedRune(func(r rune) { // comes here when nothing has the keys
+		if r == '/' {
+			f.act(station.AddBlock)
 		}
 	})
 	f.win.Canvas().AddShortcut(&desktop.CustomShortcut{KeyName: fyne.KeyZ, Modifier: fyne.KeyModifierShortcutDefault | fyne.KeyModifierShift}, func(fyne.Shortcut) {

@@ -15,6 +15,10 @@ func (c *ClockPlot) MouseDown(ev *desktop.MouseEvent) {
 	if cv := fyne.CurrentApp().Driver().CanvasForObject(c); cv != nil {
 		cv.Focus(c)
 	}
+	if c.touched = c.pointAt(ev.Position); c.touched != nil {
+		c.raster.Refresh()
+		return
+	}
 	c.held = true
 	c.to(ev.Position)
 }
@@ -24,13 +28,19 @@ func (c *ClockPlot) MouseUp(*desktop.MouseEvent) { c.held = false }
 
 // Dragged moves the clock on.
 func (c *ClockPlot) Dragged(ev *fyne.DragEvent) {
-	if c.held {
+	switch {
+	case c.touched != nil:
+		c.dragPoint(ev.Position)
+	case c.held:
 		c.to(ev.Position)
 	}
 }
 
 // DragEnd lets the clock go.
-func (c *ClockPlot) DragEnd() { c.held = false }
+func (c *ClockPlot) DragEnd() {
+	c.held = false
+	c.endPoint()
+}
 
 func (c *ClockPlot) to(at fyne.Position) {
 	if c.Moved != nil && len(c.area.Lanes) > 0 {
@@ -52,6 +62,9 @@ func (c *ClockPlot) TypedRune(rune) {}
 
 // TypedKey moves the clock: arrows by 1/200 of what is shown, page keys by a twentieth.
 func (c *ClockPlot) TypedKey(k *fyne.KeyEvent) {
+	if (k.Name == fyne.KeyDelete || k.Name == fyne.KeyBackspace) && c.removePoint() {
+		return
+	}
 	if passHelp(c, k) || c.Moved == nil || len(c.area.Lanes) == 0 {
 		return
 	}

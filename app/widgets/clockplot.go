@@ -1,6 +1,7 @@
 package widgets
 
 import (
+	"fmt"
 	"image"
 	"image/color"
 
@@ -20,6 +21,7 @@ type ClockPlot struct {
 	Moved   func(t float64)                  // the user moved the clock
 	Value   func(lane int, t float64) string // what stands beside the line; nil = nothing
 	Format  func(t float64) string           // the clock in words, above the line; nil = none
+	Points  PlotPoints                       // that can be dragged; nil = none
 	plot    figures.Plot
 	area    figures.PlotArea // at scale 1
 	clock   float64
@@ -31,6 +33,8 @@ type ClockPlot struct {
 	drawn   *pen.Raster
 	held    bool
 	focused bool
+	touched *heldPoint
+	hint    *flag // beside the point that is dragged
 }
 
 // flag is a value beside the clock line: its ground, so that lines of the plot do
@@ -42,7 +46,8 @@ type flag struct {
 
 // NewClockPlot makes an empty plot with a least size.
 func NewClockPlot(min fyne.Size, palette func() figures.Palette) *ClockPlot {
-	c := &ClockPlot{Palette: palette, min: min, line: canvas.NewRectangle(color.Black)}
+	c := &ClockPlot{Palette: palette, min: min, line: canvas.NewRectangle(color.Black), hint: newFlag()}
+	c.hint.hide()
 	c.raster = canvas.NewRaster(c.paint)
 	c.raster.ScaleMode = canvas.ImageScalePixels
 	c.mark = canvas.NewRaster(c.paintMark)
@@ -52,8 +57,10 @@ func NewClockPlot(min fyne.Size, palette func() figures.Palette) *ClockPlot {
 
 // SetPlot brings in a plot.
 func (c *ClockPlot) SetPlot(p figures.Plot) {
-	c.plot = p
-	c.flags = nil
+	c.plot, c.flags = p, nil
+	if c.touched != nil && c.touched.lane >= len(p.Lanes) {
+		c.touched = nil
+	}
 	for range p.Lanes {
 		c.flags = append(c.flags, newFlag())
 	}
@@ -123,6 +130,7 @@ func (c *ClockPlot) paint(w, h int) image.Image {
 	if vw, vh := c.view(); vw > 0 && vh > 0 {
 		c.drawn.Push(0, 0, float64(w)/vw)
 		c.plot.Draw(c.drawn, vw, vh, p)
+		c.paintPoints(c.drawn)
 		if c.focused {
 			focusFrame(c.drawn, p, vw, vh)
 		}
@@ -227,6 +235,18 @@ func (c *ClockPlot) Parts() []Part {
 		}
 		out = append(out, Part{Name: c.plot.Lanes[i].Title, Text: text, X: c.area.X * k, Y: l.Y * k, W: c.area.W * k, H: l.H * k, Click: true})
 	}
+	if c.Points == nil {
+		return out
+	}
+	for i := range c.area.Lanes { // points as "lane/row"
+		xs, ys := c.Points.Points(i)
+		for r := range min(len(xs), len(ys)) {
+			if xs[r] >= c.area.From && xs[r] <= c.area.To {
+				out = append(out, Part{Name: fmt.Sprintf("%s/%d", c.plot.Lanes[i].Title, r), Text: c.Points.Say(i, xs[r], ys[r]),
+					X: (c.area.XAt(xs[r]) - pointSize) * k, Y: (c.area.YAt(i, ys[r]) - pointSize) * k, W: 2 * pointSize * k, H: 2 * pointSize * k})
+			}
+		}
+	}
 	return out
 }
 
@@ -275,5 +295,5 @@ func (r *clockRenderer) Objects() []fyne.CanvasObject {
 	for _, f := range r.c.flags {
 		out = append(out, f.ground, f.text)
 	}
-	return out
+	return append(out, r.c.hint.ground, r.c.hint.text)
 }

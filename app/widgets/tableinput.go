@@ -211,7 +211,9 @@ func (t *Table) TypedKey(k *fyne.KeyEvent) {
 	case fyne.KeyEscape:
 		t.giveUp()
 	default:
-		PassKey(t, k)
+		if t.Key == nil || !t.Key(k.Name) {
+			PassKey(t, k)
+		}
 	}
 }
 

@@ -37,6 +37,7 @@ func (k AxisKind) String() string {
 type Axis struct {
 	Name string
 	Kind AxisKind
+	Load string // what stands at the load side, for people: "platen and bale"
 }
 
 // What says which quantity of an axis a track gives.
