@@ -35,6 +35,7 @@ type field struct {
 	knots        []int16 // per node: corners, dots and ports
 	exits        []int16 // per node: what makes it a bad place to cross, in units of costExit
 	own          []int8  // per node: ports of the net being routed, see openAny
+	ports        []int16 // per node: ports, those of the net being routed left out
 	scratch      search
 }
 
@@ -56,6 +57,9 @@ func newField(blocks []Box, nets []Net) (*field, bool) {
 		for _, p := range n.Ports {
 			all = all.with(p.At)
 		}
+		for _, r := range n.Runs {
+			all = all.with(r[0]).with(r[1])
+		}
 	}
 	width, height := all.Max.X-all.Min.X+2*margin+2, all.Max.Y-all.Min.Y+2*margin+2
 	if !(width > 0 && height > 0 && width*height <= maxNodes) {
@@ -69,7 +73,7 @@ func newField(blocks []Box, nets []Net) (*field, bool) {
 	n := f.w * f.h
 	f.block, f.used = make([]int32, 2*n), make([]int16, 2*n)
 	f.knots, f.exits = make([]int16, n), make([]int16, n)
-	f.own = make([]int8, n)
+	f.own, f.ports = make([]int8, n), make([]int16, n)
 	f.scratch.init(4 * n)
 	for _, b := range blocks {
 		f.put(b)
@@ -147,6 +151,7 @@ func (f *field) markPorts(n Net, by int16) {
 	for _, p := range n.Ports {
 		node := f.node(p.At)
 		f.knots[node] += by
+		f.ports[node] += by
 		if d := dirOf(p.Dir); d >= 0 {
 			f.exits[node+f.delta[d]] += by
 		}

@@ -137,14 +137,22 @@ func (f *field) expand(state int32, node, d int, goal Box) {
 	}
 }
 
-// offerStarts begins at the first port while there is no line yet, and then
-// at every node of the lines laid so far except at the ports themselves.
+// offerStarts begins at the first port while there is no line yet, and then at every
+// node of the lines laid so far except at the ports themselves; at these too where the
+// lines consist of nothing else, as between two ports that face each other a step apart.
 func (f *field) offerStarts(t *tree, goal Box) {
+	f.offerFrom(t, goal, false)
+	if len(f.scratch.heap) == 0 {
+		f.offerFrom(t, goal, true)
+	}
+}
+
+func (f *field) offerFrom(t *tree, goal Box, atPorts bool) {
 	s := &f.scratch
-	for _, node := range t.nodes {
+	for _, node := range t.starts() {
 		port, isPort := t.ports[node]
 		for d := 0; d < 4; d++ {
-			if isPort && port.dir >= 0 && (len(t.edges) > 0 || d != port.dir) {
+			if isPort && port.dir >= 0 && (len(t.edges) > 0 || d != port.dir) && !atPorts {
 				continue
 			}
 			if next := f.neighbour(node, d); next < 0 || t.has[f.edge(node, d)] {
