@@ -97,17 +97,8 @@ func (d *Document) Move(circuit string, at map[string][2]float64) error {
 		ids = append(ids, id)
 	}
 	slices.Sort(ids)
-	name := fmt.Sprintf("Move %d blocks", len(ids))
-	if len(ids) == 1 {
-		name = "Move " + ids[0]
-	}
-	return d.EditMerging("move "+circuit+"/"+strings.Join(ids, " "), name, func(f *audit.File) error {
-		for _, id := range ids {
-			if err := f.SetAt(circuit, id, at[id]); err != nil {
-				return err
-			}
-		}
-		return nil
+	return d.EditMerging("move "+circuit+"/"+strings.Join(ids, " "), "Move "+these(ids), func(f *audit.File) error {
+		return f.Place(circuit, at, nil)
 	})
 }
 
