@@ -36,6 +36,9 @@ type SheetOptions struct {
 	Selected   map[string]bool
 	Hover      map[string]bool
 	Lines      map[int]bool // selected lines, by number
+	Piece      *SheetPiece  // selected piece of a line
+	Notes      map[int]bool // selected notes and groups, by place in the circuit
+	Groups     map[int]bool
 	Findings   map[string]circuit.Level
 	Legend     bool // below the sheet, LegendHeight high
 	HideLabels bool
@@ -91,6 +94,7 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	}
 	p.Push(x, y, scale)
 	p.Push(-s.box.Min.X, -s.box.Min.Y, 1)
+	d.groupBoxes()
 	d.highlights()
 	d.discs()
 	d.lines()
@@ -98,6 +102,7 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	if !opt.HideLabels {
 		d.labelTexts()
 	}
+	d.noteTexts()
 	p.Pop()
 	if opt.Legend {
 		w, h := s.Size()

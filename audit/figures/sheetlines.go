@@ -35,6 +35,9 @@ func (d *sheetDrawing) lines() {
 			d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1, C: faded(d.pal.Gain, 90)})
 		}
 	}
+	if st := d.piece(d.opt.Piece); st != nil {
+		d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1.2, C: faded(d.pal.Gain, 170)})
+	}
 	for i := range d.stretches {
 		d.line(&d.stretches[i])
 	}

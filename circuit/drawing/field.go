@@ -36,6 +36,7 @@ type field struct {
 	exits        []int16 // per node: what makes it a bad place to cross, in units of costExit
 	own          []int8  // per node: ports of the net being routed, see openAny
 	ports        []int16 // per node: ports, those of the net being routed left out
+	window       Box     // where a way is looked for
 	scratch      search
 }
 
@@ -171,6 +172,30 @@ func (f *field) mark(t tree, by int16) {
 			f.exits[node] += 4 * by
 		}
 	}
+}
+
+// meets tells whether a net that is laid crosses another, or lies on one.
+func (f *field) meets(t tree) bool {
+	for _, e := range t.edges {
+		if f.used[e] > 1 {
+			return true
+		}
+	}
+	for _, node := range t.nodes {
+		out, degree := t.lines(f, node)
+		if across := degree == 2 && out[right] == out[left]; !across && f.knots[node] > 1 || across && (f.knots[node] > 0 || f.occupied(node, boolAxis(out[right]))) {
+			return true
+		}
+	}
+	return false
+}
+
+// boolAxis is the axis across a line that runs level, or upright.
+func boolAxis(level bool) int {
+	if level {
+		return 1
+	}
+	return 0
 }
 
 // occupied tells whether a line lies on node along the axis, 0 = x, 1 = y.

@@ -68,9 +68,12 @@ func RouteAll(blocks []Box, nets []Net) []Route {
 	}
 	trees := make([]tree, len(nets))
 	order := routingOrder(nets)
-	// The second round lets the nets laid first make way for the later ones.
+	// The second round lets the nets laid first make way for the later ones, where they meet.
 	for round := 0; round < 2; round++ {
 		for _, i := range order {
+			if round > 0 && !f.meets(trees[i]) {
+				continue
+			}
 			f.mark(trees[i], -1)
 			trees[i] = f.grow(nets[i])
 			f.mark(trees[i], +1)

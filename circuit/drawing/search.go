@@ -89,9 +89,28 @@ func (s *search) take() entry {
 	return top
 }
 
+// around is how far beside its ports a way is looked for first [M].
+const around = 20
+
 // path finds the cheapest way from the tree to one of the open ports, as
-// nodes from the tree's end on; nil if there is none.
+// nodes from the tree's end on; nil if there is none. It is looked for near the ports,
+// and on the whole sheet only when what is found there is poor: large sheets take the
+// time that their lines need, not that of their area.
 func (f *field) path(t *tree, open []terminal) []int {
+	f.window = f.goalBox(open)
+	for node := range t.ports {
+		f.window = f.window.with(f.at(node))
+	}
+	f.window = f.window.grown(around)
+	way, cost := f.pathInside(t, open)
+	if way == nil || cost >= costKnot {
+		f.window = Box{f.at(0), f.at(f.w*f.h - 1)}
+		way, _ = f.pathInside(t, open)
+	}
+	return way
+}
+
+func (f *field) pathInside(t *tree, open []terminal) (way []int, cost int32) {
 	s := &f.scratch
 	s.begin()
 	goal := f.goalBox(open)
@@ -99,14 +118,19 @@ func (f *field) path(t *tree, open []terminal) []int {
 	for {
 		state := s.pop()
 		if state < 0 {
-			return nil
+			return nil, 0
 		}
 		node, d := int(state/4), int(state%4)
 		if s.from[state] >= 0 && f.arrives(node, d) {
-			return f.trace(state)
+			return f.trace(state), s.cost[state]
 		}
 		f.expand(state, node, d, goal)
 	}
+}
+
+func (f *field) inWindow(node int) bool {
+	p, w := f.at(node), &f.window
+	return p.X >= w.Min.X && p.X <= w.Max.X && p.Y >= w.Min.Y && p.Y <= w.Max.Y
 }
 
 // arrives tells whether a line that comes to node in direction d ends there
@@ -123,7 +147,7 @@ func (f *field) expand(state int32, node, d int, goal Box) {
 			continue
 		}
 		next := f.neighbour(node, out)
-		if next < 0 {
+		if next < 0 || !f.inWindow(next) {
 			continue
 		}
 		cost := s.cost[state] + f.stepCost(node, out, next)
@@ -133,7 +157,7 @@ func (f *field) expand(state int32, node, d int, goal Box) {
 		if f.own[next] != 0 && !f.arrives(next, out) {
 			cost += costKnot
 		}
-		s.offer(int32(4*next+out), state, cost, f.ahead(next, goal))
+		s.offer(int32(4*next+out), state, cost, f.ahead(next, out, goal))
 	}
 }
 
@@ -162,7 +186,7 @@ func (f *field) offerFrom(t *tree, goal Box, atPorts bool) {
 			if len(t.edges) > 0 {
 				cost = costTee + f.turnCost(node)
 			}
-			s.offer(int32(4*node+d), -1, cost, f.ahead(node, goal))
+			s.offer(int32(4*node+d), -1, cost, f.ahead(node, d, goal))
 		}
 	}
 }
@@ -187,11 +211,21 @@ func (f *field) goalBox(open []terminal) Box {
 	return b
 }
 
-// ahead is a lower bound of the cost still to come: the plain way to the
-// box round all goals.
-func (f *field) ahead(node int, goal Box) int32 {
+// ahead is a lower bound of the cost still to come: the plain way to the box round all
+// goals, and the bends that it takes when entered in direction d.
+func (f *field) ahead(node, d int, goal Box) int32 {
 	p := f.at(node)
 	dx := max(goal.Min.X-p.X, p.X-goal.Max.X, 0)
 	dy := max(goal.Min.Y-p.Y, p.Y-goal.Max.Y, 0)
-	return int32(costStep * (dx + dy))
+	cost := int32(costStep * (dx + dy))
+	if d&1 == 0 && dy > 0 || d&1 == 1 && dx > 0 {
+		cost += costBend
+	}
+	if d == right && p.X > goal.Max.X || d == left && p.X < goal.Min.X || d == down && p.Y > goal.Max.Y || d == up && p.Y < goal.Min.Y {
+		cost += costBend
+		if d&1 == 0 && dy == 0 || d&1 == 1 && dx == 0 {
+			cost += costBend
+		}
+	}
+	return cost
 }
