@@ -94,19 +94,25 @@ const around = 20
 
 // path finds the cheapest way from the tree to one of the open ports, as
 // nodes from the tree's end on; nil if there is none. It is looked for near the ports,
-// and on the whole sheet only when what is found there is poor: large sheets take the
+// and farther away only when what is found there is poor: large sheets take the
 // time that their lines need, not that of their area.
 func (f *field) path(t *tree, open []terminal) []int {
 	f.window = f.goalBox(open)
 	for node := range t.ports {
 		f.window = f.window.with(f.at(node))
 	}
-	f.window = f.window.grown(around)
+	ports := f.window
+	f.window = ports.grown(around)
 	way, cost := f.pathInside(t, open)
-	if way == nil || cost >= costKnot {
-		f.window = Box{f.at(0), f.at(f.w*f.h - 1)}
-		way, _ = f.pathInside(t, open)
+	if way != nil && cost < costKnot+costStep*int32(len(way)) {
+		return way
 	}
+	f.window = ports.grown(3 * around)
+	if way, cost = f.pathInside(t, open); way != nil && cost < costInside {
+		return way
+	}
+	f.window = Box{f.at(0), f.at(f.w*f.h - 1)}
+	way, _ = f.pathInside(t, open)
 	return way
 }
 
