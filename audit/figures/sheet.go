@@ -22,6 +22,7 @@ type Sheet struct {
 	crossings []drawing.Crossing
 	labels    []sheetLabel
 	notes     []sheetNote
+	veil      *veil       // what is not drawn, nil = all is
 	seen      *seen       // nil before there are results
 	box       drawing.Box // of everything that may be drawn, without legend
 }

@@ -154,7 +154,7 @@ func (d *sheetDrawing) highlights() {
 	for i := range d.parts {
 		p := &d.parts[i]
 		sel, hov := d.opt.Selected[p.id], d.opt.Hover[p.id]
-		if !sel && !hov {
+		if !sel && !hov || d.veil.part(i) {
 			continue
 		}
 		b := grown(p.body, 0.5)
@@ -171,7 +171,7 @@ func (d *sheetDrawing) discs() {
 	for i := range d.parts {
 		p := &d.parts[i]
 		share := ratio(d.st.Heat(p.id), d.most)
-		if share < discShown || p.copied {
+		if share < discShown || p.copied || d.veil.part(i) {
 			continue
 		}
 		d.p.Circle(penPt(p.centre), discOf(share), faded(d.pal.Heat, 84), pen.Stroke{W: 0.16, C: faded(d.pal.Heat, 190)})

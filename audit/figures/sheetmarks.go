@@ -124,6 +124,9 @@ func (s *Sheet) marksTaken(k *labeller) {
 // groupBoxes draws the boxes, below all else.
 func (d *sheetDrawing) groupBoxes() {
 	for i, g := range d.groups() {
+		if d.veil.group(i) {
+			continue
+		}
 		line := dashed(0.2, d.pal.Secondary, drawing.Chain)
 		fill := faded(d.pal.Secondary, 10)
 		if d.opt.Groups[i] {
@@ -138,6 +141,9 @@ func (d *sheetDrawing) groupBoxes() {
 // noteTexts writes the notes, each with a stroke at its left edge.
 func (d *sheetDrawing) noteTexts() {
 	for i, n := range d.notes {
+		if d.veil.note(i) {
+			continue
+		}
 		b := n.box
 		edge, fill := faded(d.pal.Secondary, 150), d.pal.Card
 		fill.A = 220
