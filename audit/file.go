@@ -22,8 +22,8 @@ const Format = "barlitre/1"
 // which keep the text in step: an edit changes the text where it must, reads it again,
 // and takes it if it reads no worse than before; else nothing is changed and the error
 // says why. Values are changed by Set, Put, Clear and SetPoint; a sheet is drawn by
-// AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, SetAt, Rotate, Mirror,
-// AddNote and AddGroup; AddCircuit, CopyCircuit and SwapRoles make and exchange
+// AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, Place, Rotate, Mirror,
+// Bend, AddNote and AddGroup; AddCircuit, CopyCircuit and SwapRoles make and exchange
 // sheets; AddAxis, AddDuty, AddTrack, AddRow, SetTable and SetDuty say what the machine does.
 //
 // # Format
@@ -124,6 +124,7 @@ const Format = "barlitre/1"
 //	  notes: [{text: "label not legible", at: [30, 4]}]
 //	  groups: [{label: Power unit, blocks: [M1, P1, RV1]}]
 //	  heat: {cooler_rate: 0.1 kW/K}
+//	  bends: [{port: P1.P, runs: [[10, 20, 24, 20], [24, 20, 24, 30]]}]
 //
 // In place of points may stand "file: press.csv", a table beside the audit file (or
 // in a folder below it) whose head has the same names with their units: see
@@ -145,8 +146,9 @@ const Format = "barlitre/1"
 // place on the sheet: at in modules, quarter turns, mirrored or not. Its id is
 // made of letters, digits and _. A line joins the ports that it names. A
 // retrofit_cost is for proposals; low and high go together. notes are texts on the
-// sheet, at their upper left corner; groups are labelled boxes around blocks. Neither
-// changes what is computed.
+// sheet, at their upper left corner; groups are labelled boxes around blocks; bends say
+// how the line at a port was laid by hand: pieces, each upright or level, from x, y to
+// x, y. None of them changes what is computed.
 //
 // What was read at the machine in a site check stands last, by state, block and quantity (see Reading):
 //
@@ -242,11 +244,9 @@ type Cost struct {
 // CircuitEntry is a circuit with its part in the audit.
 type CircuitEntry struct {
 	*circuit.Circuit
-	Role   Role
-	Cost   Cost
-	Heat   HeatSection // where it differs from that of all circuits
-	Notes  []SheetNote
-	Groups []SheetGroup
+	Role Role
+	Cost Cost
+	Heat HeatSection // where it differs from that of all circuits
 }
 
 // Open reads a file that an audit file names, by its path relative to the audit

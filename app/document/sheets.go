@@ -3,6 +3,7 @@ package document
 import (
 	"barlitre/audit"
 	"barlitre/circuit/duty"
+	"fmt"
 )
 
 // AddCircuit adds an empty sheet.
@@ -66,6 +67,15 @@ func (d *Document) SetGroup(circuitName string, group int, label string, ids ...
 // DeleteGroup takes a box away; its blocks stay.
 func (d *Document) DeleteGroup(circuitName string, group int) error {
 	return d.Edit("Delete group", func(f *audit.File) error { return f.DeleteGroup(circuitName, group) })
+}
+
+// Bend lays a line by hand, as audit.File.Bend does; without runs it is straightened.
+func (d *Document) Bend(circuitName, line string, lines []int, runs [][2][2]float64) error {
+	name := "Bend line " + line
+	if len(runs) == 0 {
+		name = "Straighten line " + line
+	}
+	return d.EditMerging(fmt.Sprint("bend ", circuitName, lines), name, func(f *audit.File) error { return f.Bend(circuitName, lines, runs) })
 }
 
 // AddAxis adds an axis.

@@ -1,6 +1,8 @@
 package sheet
 
 import (
+	"strings"
+
 	"fmt"
 
 	"fyne.io/fyne/v2"
@@ -148,7 +150,8 @@ func (s *Station) renameCircuit(old string) {
 		e = s.editors[0]
 	}
 	at := fyne.CurrentApp().Driver().AbsolutePositionForObject(e).AddXY(20, 10)
-	e.askName("Name of the circuit:", old, at, func(name string) bool {
+	e.askAt(at, "Name of the circuit:", old, "sheet.rename", func(name string) bool {
+		name = strings.TrimSpace(name)
 		if name == old {
 			return true
 		}

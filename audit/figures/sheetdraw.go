@@ -36,6 +36,9 @@ type SheetOptions struct {
 	Selected   map[string]bool
 	Hover      map[string]bool
 	Lines      map[int]bool // selected lines, by number
+	Piece      *SheetPiece  // selected piece of a line
+	Notes      map[int]bool // selected notes and groups, by place in the circuit
+	Groups     map[int]bool
 	Findings   map[string]circuit.Level
 	Legend     bool // below the sheet, LegendHeight high
 	HideLabels bool
@@ -93,6 +96,7 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	}
 	p.Push(x, y, scale)
 	p.Push(-s.box.Min.X, -s.box.Min.Y, 1)
+	d.groupBoxes()
 	d.highlights()
 	d.discs()
 	d.lines()
@@ -100,6 +104,7 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	if !opt.HideLabels {
 		d.labelTexts()
 	}
+	d.noteTexts()
 	p.Pop()
 	if opt.Legend {
 		w, h := s.Size()
@@ -151,7 +156,7 @@ func (d *sheetDrawing) highlights() {
 	for i := range d.parts {
 		p := &d.parts[i]
 		sel, hov := d.opt.Selected[p.id], d.opt.Hover[p.id]
-		if !sel && !hov {
+		if !sel && !hov || d.veil.part(i) {
 			continue
 		}
 		b := grown(p.body, 0.5)
@@ -171,7 +176,7 @@ func (d *sheetDrawing) discs() {
 	for i := range d.parts {
 		p := &d.parts[i]
 		share := ratio(d.st.Heat(p.id), d.most)
-		if share < discShown || p.copied {
+		if share < discShown || p.copied || d.veil.part(i) {
 			continue
 		}
 		d.p.Circle(penPt(p.centre), discOf(share), faded(d.pal.Heat, 84), pen.Stroke{W: 0.16, C: faded(d.pal.Heat, 190)})

@@ -31,23 +31,33 @@ func (d *sheetDrawing) tintOf(n netNow) color.NRGBA {
 // lines draws lines, the gaps where they cross, dots and chevrons.
 func (d *sheetDrawing) lines() {
 	for i := range d.stretches {
-		if st := &d.stretches[i]; d.opt.Lines[st.net] {
+		if st := &d.stretches[i]; d.opt.Lines[st.net] && !d.veil.net(st.net) {
 			d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1, C: faded(d.pal.Gain, 90)})
 		}
 	}
+	if st := d.piece(d.opt.Piece); st != nil && !d.veil.net(st.net) {
+		d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1.2, C: faded(d.pal.Gain, 170)})
+	}
 	for i := range d.stretches {
-		d.line(&d.stretches[i])
+		if !d.veil.net(d.stretches[i].net) {
+			d.line(&d.stretches[i])
+		}
 	}
 	d.drawStubs()
 	for _, c := range d.crossings {
-		d.crossing(c)
+		if !d.veil.net(c.Over) && !d.veil.net(c.Under) {
+			d.crossing(c)
+		}
 	}
 	for i := range d.nets {
 		d.dots(i)
 	}
 	for i := range d.stretches {
 		st := &d.stretches[i]
-		if q := st.along(d.now[st.net]); d.flowing(q) && !d.opt.hides(Chevrons) {
+		if d.veil.net(st.net) || d.opt.hides(Chevrons) {
+			continue
+		}
+		if q := st.along(d.now[st.net]); d.flowing(q) {
 			for _, c := range d.chevrons(st, q, d.widthOf(q)) {
 				d.chevron(c, d.tintOf(d.now[st.net]))
 			}
@@ -136,6 +146,9 @@ func (d *sheetDrawing) drawStubs() {
 			d.stubOf[sb.part] = map[int]bool{}
 		}
 		d.stubOf[sb.part][sb.prim] = true
+		if d.veil.net(sb.net) {
+			continue
+		}
 		n := d.now[sb.net]
 		w := d.widthOf(n.into[sb.end])
 		if sb.pilot {
@@ -205,7 +218,7 @@ func (s *Sheet) stretchAt(net int, at drawing.Pt, upright bool) *stretch {
 
 // dots marks where lines of a net meet, no narrower than the lines.
 func (d *sheetDrawing) dots(i int) {
-	if !d.nets[i].kind.Fluid() {
+	if !d.nets[i].kind.Fluid() || d.veil.net(i) {
 		return
 	}
 	for _, at := range d.nets[i].route.Dots {

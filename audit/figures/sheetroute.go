@@ -65,6 +65,7 @@ func (s *Sheet) routeInput() ([]drawing.Box, []drawing.Net) {
 		for _, j := range n.junctions {
 			nets[i].Ports = append(nets[i].Ports, drawing.PlacedPort{Block: -1, At: s.parts[j].at})
 		}
+		nets[i].Runs = s.runsOf(&n)
 	}
 	return boxes, nets
 }

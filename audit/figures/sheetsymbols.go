@@ -13,6 +13,9 @@ import (
 func (d *sheetDrawing) symbols() {
 	for i := range d.parts {
 		p := &d.parts[i]
+		if d.veil.part(i) {
+			continue
+		}
 		shift := d.pistonShift(p)
 		square, tint := d.square(p)
 		for k, q := range p.symbol.Prims {

@@ -23,6 +23,9 @@ func (w word) width() float64 { return pen.TextWidth(w.text, w.size, w.bold) }
 func (d *sheetDrawing) labelTexts() {
 	for i := range d.labels {
 		l := &d.labels[i]
+		if l.part >= 0 && d.veil.part(l.part) || l.part < 0 && d.veil.net(d.stretches[l.stretch].net) {
+			continue
+		}
 		var rows [][]word
 		unused := l.box.Max.Y - l.box.Min.Y
 		for _, r := range l.rows {
