@@ -69,7 +69,7 @@ func (m *motorWatch) take(s *Sample, dt float64) {
 	m.square += dt * (T*T + m.last*m.last) / 2
 	m.heated += dt * (h*h + m.lastH*m.lastH) / 2
 	m.amps += dt * (I*I + m.lastI*m.lastI) / 2
-	m.ampere = math.Max(m.ampere, I)
+	m.ampere = max(m.ampere, I)
 	if math.Abs(T) > m.peak {
 		m.peak, m.tPeak = math.Abs(T), s.T
 	}
