@@ -28,6 +28,12 @@ func printReport(w io.Writer, r *audit.Report) {
 			auditTable(w, t)
 		}
 	}
+	if len(r.Recordings.Rows) > 0 {
+		heading(w, r.Recordings.Title)
+		for _, row := range r.Recordings.Rows {
+			wrap(w, row.Cells[0]+": "+row.Cells[1])
+		}
+	}
 	if len(r.Findings) > 0 {
 		heading(w, "Findings")
 		for _, f := range r.Findings {

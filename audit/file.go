@@ -23,7 +23,7 @@ const Format = "barlitre/1"
 // and takes it if it reads no worse than before; else nothing is changed and the error
 // says why. Values are changed by Set, Put, Clear and SetPoint; a sheet is drawn by
 // AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, Place, Rotate, Mirror,
-// Bend, AddNote and AddGroup; AddCircuit, CopyCircuit and SwapRoles make and exchange
+// Bend, AddNote and AddGroup; ImportDuty and SetImport take duties from recordings; AddCircuit, CopyCircuit and SwapRoles make and exchange
 // sheets; AddAxis, AddDuty, AddTrack, AddRow, SetTable and SetDuty say what the machine does.
 //
 // # Format
@@ -106,7 +106,8 @@ const Format = "barlitre/1"
 //	  hours: 3000 h               a year; 0 when not given
 //	  repeats: yes                the cycle follows itself without pause; yes when not given
 //	  step: 10 ms                 between time steps; when not given a thousandth of the
-//	                              cycle, rounded to 1, 2 or 5, at most 10 ms; 0 s: rows only
+//	                              cycle, rounded to 1, 2 or 5, at most 10 ms; 0 s: rows only,
+//	                              and so for a recording of 100 rows or more that gives none
 //	  points: {t: [0 s, 2 s], ram.speed: [0 m/s, 0.15 m/s], "ram.load [kN]": [5, 5]}
 //	  phases: {approach: 0 s, press: 2.1 s}
 //	  standstill: {ram: 1 mm/s}   speed up to which an axis counts as standing; when not
@@ -133,6 +134,44 @@ const Format = "barlitre/1"
 //
 //	file: press.csv
 //	columns: {t: "time [s]", ram.speed: "v1 [mm/s]", ram.load: "F1 [kN]"}
+//
+// What a data logger wrote as it came is taken by import, which says how it is read: the
+// recipe that barlitre import prints (logger.Recipe). columns then name its channels, whose units the
+// import says; derived works tracks out from channels. sha256 is that of the file as it was
+// looked at; another file is told when the audit is opened:
+//
+//	file: press.csv
+//	sha256: 976ca431...
+//	import:
+//	  encoding: UTF-8             or UTF-16 LE, UTF-16 BE, Windows-1252 (Latin-1 too)
+//	  separator: ";"              or ",", tab, "|", space, fixed (with widths: [0, 10, 22])
+//	  decimal: ","
+//	  thousands: "."              or ",", "'", " "; none when not given
+//	  head: 4                     line that names the columns, 0 = none; units_row: 5
+//	  first: 6                    first line of numbers
+//	  time: {columns: [Date, Time], form: dated, order: dmy}
+//	                              form: elapsed or epoch (with unit), clock, dated, serial, or
+//	                              spaced (with interval_s); counter: the column that counts records
+//	  channels:
+//	  - {column: p1, quantity: pressure, unit: bar}
+//	  - {column: p2, quantity: pressure, unit: bar, absolute: yes,
+//	     scaling: {signal: mA, from: [4, 20], to: [0, 400]}}
+//	  - {column: E1, quantity: energy, unit: kWh, counter: yes}
+//	  - {column: note, text: yes}
+//	  choices: {"p1: zero offset": leave, out of order: drop}
+//	columns: {X1.pressure: p1}
+//	derived:
+//	  ram.speed: {law: speed of position, position: x1, window: 0.2 s}
+//	  ram.load: {law: chamber pressures, a: p1, b: p2, bore: 80 mm, rod: 56 mm,
+//	             friction: 800 N, viscous: 1500 N s/m, mass: 0 kg, position: x1}
+//	  drum.load: {law: motor pressures, a: p3, b: p4, displacement: 80 cm3/rev, gear: 12,
+//	              efficiency: 0.92, inertia: 0 kg m2, speed: n1}
+//	  drum.speed: {law: speed of flow, flow: q1, displacement: 80 cm3/rev, gear: 12, volumetric: 0.95}
+//	  arm.load: {law: sign turned, column: F2}
+//
+// Friction and mass are those that the cylinder of the circuit has too: they are taken off
+// here, for they are added there. Everything that the import finds or changes is told when
+// the file is read, in the report and in the result.
 //
 // A track is axis.speed, axis.position, axis.load,
 // axis.command, or block.command for a block that is commanded by itself. A track of a
@@ -185,8 +224,9 @@ type File struct {
 
 	Axes     []duty.Axis
 	Duties   []*duty.Duty
-	Sources  []Source  // by duty; the zero Source where the points stand in the audit file
-	Imports  []*Import // by duty; nil where no recipe says how its recording is read
+	Sources  []Source     // by duty; the zero Source where the points stand in the audit file
+	Imports  []*Import    // by duty; nil where no recipe says how its recording is read
+	Rates    [][]AxisRate // by duty; how well a recording tells the energy of its axes
 	Circuits []CircuitEntry
 	Readings []Reading // of a site check
 

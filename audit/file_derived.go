@@ -42,14 +42,23 @@ func (r *reader) derived(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.N
 			continue
 		}
 		of := in.in(e.key)
-		f := r.fields(of, e.value, "", "law", "column", "position", "speed", "flow", "a", "b", "bore", "rod", "friction", "damping", "mass", "window",
+		f := r.fields(of, e.value, "", "law", "column", "position", "speed", "flow", "a", "b", "bore", "rod", "friction", "viscous", "mass", "window",
 			"displacement", "gear", "efficiency", "volumetric", "inertia")
 		v := &derivation{r, of, f, rec, e.value, dim, true}
 		before := len(r.found)
-		tr := v.track()
+		key := e.key + ": " + flowText(e.value)
+		tr, done := r.from.derived[key]
+		if !done {
+			tr = v.track()
+		}
 		if len(r.found) == before && v.ok {
+			r.from.derived[key] = tr
 			r.keep(d, e.key, tr.Values)
-			out = append(out, Derived{e.key, tr.Formula})
+			says := map[string]string{}
+			for key, x := range f {
+				says[key] = x.text()
+			}
+			out = append(out, Derived{e.key, tr.Formula, says})
 		}
 	}
 	return out
@@ -182,7 +191,7 @@ func (v *derivation) chambers() channels.Track {
 		v.ok = false
 	}
 	c := channels.Cylinder{A: math.Pi / 4 * bore * bore, B: math.Pi / 4 * (bore*bore - rod*rod),
-		Friction: v.number("friction", units.Force, 0, false), Damping: v.number("damping", units.ViscousFriction, 0, false), Mass: v.number("mass", units.Mass, 0, false)}
+		Friction: v.number("friction", units.Force, 0, false), Damping: v.number("viscous", units.ViscousFriction, 0, false), Mass: v.number("mass", units.Mass, 0, false)}
 	a, b := v.channelOf("a", units.Pressure, true), v.channelOf("b", units.Pressure, false)
 	speed, w := v.speed(units.Velocity, units.Length), v.window()
 	if !v.ok {

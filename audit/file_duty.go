@@ -30,7 +30,8 @@ func (r *reader) duties(n, root *yaml.Node) {
 		} else {
 			line[name] = at.Line
 		}
-		r.file.Imports = append(r.file.Imports, nil)
+		r.from = nil
+		r.file.Imports, r.file.Rates = append(r.file.Imports, nil), append(r.file.Rates, nil)
 		d, src := r.duty(name, item)
 		r.file.Duties = append(r.file.Duties, d)
 		r.file.Sources = append(r.file.Sources, src)
@@ -94,6 +95,7 @@ func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 		for _, p := range d.Check() {
 			r.book(s, at[p.Track], p.Track, p.Error())
 		}
+		r.rate(s, d, f, len(r.file.Imports)-1)
 	}
 	return d, src
 }

@@ -13,7 +13,9 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/circuit/recording/channels"
 	"barlitre/circuit/recording/logger"
+	"barlitre/circuit/recording/rate"
 	"barlitre/machines/units"
 )
 
@@ -28,11 +30,15 @@ type Import struct {
 	Start        string  // date and clock of the first row, where the recording has them
 	Corrections  []logger.Correction
 	Marks        []logger.Mark
+	Columns      map[string]string // by track, the channel it is
 	Derived      []Derived
 }
 
 // Derived is a track that was worked out from channels.
-type Derived struct{ Track, Formula string }
+type Derived struct {
+	Track, Formula string
+	Says           map[string]string // as the file has it
+}
 
 // imported reads the rows of a duty from a logger's recording by the recipe under import.
 func (r *reader) imported(s scope, d *duty.Duty, f map[string]entry) Source {
@@ -61,7 +67,7 @@ func (r *reader) imported(s scope, d *duty.Duty, f map[string]entry) Source {
 		r.told(s, level, file.value, name+": "+c.String())
 	}
 	d.Time = rec.Time
-	r.channelTracks(s, d, rec, name, f["columns"].value)
+	im.Columns = r.channelTracks(s, d, rec, f["columns"].value)
 	im.Derived = r.derived(s, d, rec, f["derived"].value)
 	r.file.Imports[len(r.file.Imports)-1] = im
 	return Source{File: name, SHA256: rec.SHA256}
@@ -129,6 +135,7 @@ func (r *reader) recording(s scope, at *yaml.Node, name string, recipe *yaml.Nod
 	}
 	key := name + "\x00" + string(text)
 	if t := r.file.tables[key]; t != nil {
+		r.from = t
 		return t.rec
 	}
 	if r.file.open == nil {
@@ -140,13 +147,28 @@ func (r *reader) recording(s scope, at *yaml.Node, name string, recipe *yaml.Nod
 		r.bad(s, at, "file", "%v", cannotRead(name, err))
 		return nil
 	}
-	for k, t := range r.file.tables { // of the same file by another recipe: it is not asked for again
+	r.file.forget(name)
+	t := &recorded{rec: rec, channels: map[string][]float64{}, derived: map[string]channels.Track{}, rates: map[rateOf]rate.Check{}}
+	r.file.tables[key], r.from = t, t
+	return rec
+}
+
+// importsKept is how many imports of one file are kept: of duties that read it in other ways, and of one undone.
+const importsKept = 3
+
+// forget drops what was read of a file by other recipes when there is too much of it.
+func (f *File) forget(name string) {
+	var of []string
+	for k, t := range f.tables {
 		if t.rec != nil && strings.HasPrefix(k, name+"\x00") {
-			delete(r.file.tables, k)
+			of = append(of, k)
 		}
 	}
-	r.file.tables[key] = &recorded{rec: rec, channels: map[string][]float64{}}
-	return rec
+	if len(of) >= importsKept {
+		for _, k := range of {
+			delete(f.tables, k)
+		}
+	}
 }
 
 func (f *File) importFile(name string, rp logger.Recipe) (*logger.Recording, error) {
@@ -172,7 +194,8 @@ func (f *File) importFile(name string, rp logger.Recipe) (*logger.Recording, err
 }
 
 // channelTracks takes channels as they are: which track is which column.
-func (r *reader) channelTracks(s scope, d *duty.Duty, rec *logger.Recording, file string, n *yaml.Node) {
+func (r *reader) channelTracks(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.Node) map[string]string {
+	out := map[string]string{}
 	in := s.in("columns")
 	for _, e := range r.entries(s, n, "columns") {
 		if e.key == "t" {
@@ -189,8 +212,10 @@ func (r *reader) channelTracks(s scope, d *duty.Duty, rec *logger.Recording, fil
 		}
 		if v := r.channel(in, rec, e.value, e.key, column, dim); v != nil {
 			r.keep(d, e.key, v)
+			out[e.key] = column
 		}
 	}
+	return out
 }
 
 // channel returns the values of a column that must be of a quantity.
@@ -212,23 +237,11 @@ func (r *reader) channel(s scope, rec *logger.Recording, at *yaml.Node, key, col
 		r.bad(s, at, key, "%s: %q is a %s, must be a %s; say its quantity and unit in the import", rec.Name, column, was, dim.Name())
 		return nil
 	}
-	t := r.file.tableOf(rec)
-	if t == nil {
-		return c.Values()
-	}
+	t := r.from
 	t.Lock()
 	defer t.Unlock()
 	if t.channels[column] == nil {
 		t.channels[column] = c.Values()
 	}
 	return t.channels[column]
-}
-
-func (f *File) tableOf(rec *logger.Recording) *recorded {
-	for _, t := range f.tables {
-		if t.rec == rec {
-			return t
-		}
-	}
-	return nil
 }

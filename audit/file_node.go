@@ -20,6 +20,7 @@ type reader struct {
 	misspelt bool
 	axes     map[string]bool // names, also of axes whose kind is wrong
 	blocks   map[string]bool // ids over all circuits
+	from     *recorded       // what the duty at hand is taken from; nil = it is typed
 }
 
 // scope says where in the file something stands, for findings.

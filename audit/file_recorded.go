@@ -12,7 +12,9 @@ import (
 
 	"barlitre/circuit/duty"
 	"barlitre/circuit/recording"
+	"barlitre/circuit/recording/channels"
 	"barlitre/circuit/recording/logger"
+	"barlitre/circuit/recording/rate"
 	"barlitre/machines"
 	"barlitre/machines/units"
 )
@@ -24,6 +26,7 @@ func (r *reader) recorded(s scope, d *duty.Duty, n *yaml.Node, columns entry) So
 	if table == nil {
 		return Source{}
 	}
+	r.from = table
 	in := s
 	in.where = fmt.Sprintf("%s, %s", s.where, name)
 	var tracks []recordedTrack
@@ -142,7 +145,9 @@ type recorded struct {
 	sync.Mutex       // of what is converted
 	*recording.Table // nil where it was imported by a recipe
 	rec              *logger.Recording
-	channels         map[string][]float64  // of rec, by column, SI
+	channels         map[string][]float64      // of rec, by column, SI
+	derived          map[string]channels.Track // of rec, by what the file says of them
+	rates            map[rateOf]rate.Check
 	in               map[string]units.Unit // by column: the unit that its values were in before they were converted
 	si               map[columnIn][]float64
 }
@@ -219,6 +224,6 @@ func (r *reader) table(s scope, n *yaml.Node, key, name string) *recorded {
 	if t == nil {
 		return nil
 	}
-	f.tables[name] = &recorded{Table: t, in: map[string]units.Unit{}, si: map[columnIn][]float64{}}
+	f.tables[name] = &recorded{Table: t, in: map[string]units.Unit{}, si: map[columnIn][]float64{}, rates: map[rateOf]rate.Check{}}
 	return f.tables[name]
 }

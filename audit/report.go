@@ -14,6 +14,7 @@ type Report struct {
 	Decisions   []Decision
 	Circuits    []CircuitPage
 	Assumptions []string
+	Recordings  Table // what the duties were taken from, what was found there and done; no rows without one
 	Exclusions  []string
 	Method      []Law
 	Cautions    []CautionText
@@ -100,7 +101,7 @@ func (t *Table) add(sum bool, cells ...string) { t.Rows = append(t.Rows, TableRo
 func (s *Solution) Report(system units.System) *Report {
 	p := printer{system: system, currency: s.Tariff.Currency}
 	r := &Report{Title: s.File.Title, Site: s.File.Site, System: system,
-		Assumptions: s.assumptions(p), Exclusions: exclusions(), Method: s.method(), Cautions: s.Cautions()}
+		Assumptions: s.assumptions(p), Exclusions: exclusions(), Method: s.method(), Cautions: s.Cautions(), Recordings: s.recordingsTable(p)}
 	r.Warmth, r.Requests = s.heatTables(p), s.Requests(system)
 	for _, c := range s.Comparisons {
 		r.Decisions = append(r.Decisions, s.decision(p, c))

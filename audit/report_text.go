@@ -32,7 +32,8 @@ func (s *Solution) assumptions(p printer) []string {
 
 func (s *Solution) dutyAssumptions(p printer) []string {
 	var out []string
-	for _, d := range s.File.Duties {
+	for i, d := range s.File.Duties {
+		out = append(out, s.recordingLines(p, i)...)
 		for _, a := range s.File.Axes {
 			if v, ok := d.Standstill[a.Name]; ok {
 				dim := units.Velocity

@@ -44,6 +44,7 @@ type Result struct {
 	Title       string             `json:"title"`
 	Circuits    []CircuitResult    `json:"circuits"`
 	Comparisons []ComparisonResult `json:"comparisons"`
+	Recordings  []RecordingResult  `json:"recordings,omitempty"` // that duties were taken from
 	LimitsOfUse []string           `json:"limits_of_use"`
 	// FixFirst is what package fixfirst finds in the circuits as found, where it was asked.
 	FixFirst []any `json:"fix_first,omitempty"`
@@ -168,7 +169,8 @@ func (r *Result) Write(w io.Writer) error {
 
 // Result returns the solution as it goes into a result file.
 func (s *Solution) Result() *Result {
-	r := &Result{Format: ResultFormat, Title: s.File.Title, Circuits: []CircuitResult{}, Comparisons: []ComparisonResult{}}
+	r := &Result{Format: ResultFormat, Title: s.File.Title, Circuits: []CircuitResult{}, Comparisons: []ComparisonResult{},
+		Recordings: s.File.recordingResults()}
 	for _, c := range s.Circuits {
 		cr := CircuitResult{Name: c.Circuit.Name, Duties: []DutyResult{}, Year: s.yearResult(c),
 			Services: serviceResults(c), Findings: append([]circuit.Finding{}, c.Findings...)}

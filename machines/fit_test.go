@@ -18,7 +18,7 @@ func pump57(t *testing.T) []Point {
 	t.Helper()
 	dir := os.Getenv("BARLITRE_DATA")
 	if dir == "" {
-		t.Skip("BARLITRE_DATA names no folder with measured pump points")
+		t.Skip("set BARLITRE_DATA to the folder that holds piston_pump_57cm3_points.csv")
 	}
 	f, err := os.Open(filepath.Join(dir, "piston_pump_57cm3_points.csv"))
 	if err != nil {

@@ -238,7 +238,8 @@ func (g *guesser) numeric(n *numbers) {
 		if name == g.Time.Counter {
 			continue
 		}
-		up, down, _ := rising(g.values(n, i))
+		v := g.values(n, i)
+		up, down, _ := rising(v)
 		u, known := unitOf(g.units[i])
 		s := 0
 		if timeWords.MatchString(strings.TrimSpace(name)) {
@@ -249,6 +250,9 @@ func (g *guesser) numeric(n *numbers) {
 		}
 		if g.Head == 0 && i == 0 {
 			s += 2
+		}
+		if s == 0 && i == 0 && !known && len(v) > 0 && (epochLike(v) || evenly(v)) {
+			s = 1
 		}
 		if s == 0 || up < 5*down || up == 0 {
 			continue
@@ -293,6 +297,26 @@ func (g *guesser) numeric(n *numbers) {
 			g.because(true, "%s: no unit is given, taken as seconds", g.names[best])
 		}
 	}
+}
+
+// epochLike reports whether a column begins as stamps since 1970 do, in s, ms, us or ns.
+func epochLike(v []float64) bool {
+	x := v[0]
+	return x > 1e9 && x < 4e9 || x > 1e12 && x < 4e12 || x > 1e15 && x < 4e15 || x > 1e18 && x < 4e18
+}
+
+// evenly reports whether a column rises by one and the same step all the time.
+func evenly(v []float64) bool {
+	if len(v) < 4 {
+		return false
+	}
+	h := v[1] - v[0]
+	for i := 1; i < len(v); i++ {
+		if !(math.Abs(v[i]-v[i-1]-h) <= 1e-6*h) {
+			return false
+		}
+	}
+	return h > 0
 }
 
 func whole(v []float64) bool {
@@ -370,8 +394,12 @@ func (g *guesser) order(column int) {
 			days[o] = append(days[o], day)
 		}
 	}
+	orders := []string{"dmy", "mdy", "ymd"}
+	if g.halfDays(column) {
+		orders = []string{"mdy", "dmy", "ymd"} // who writes AM and PM writes the month first, as a rule
+	}
 	var left []string
-	for _, o := range []string{"dmy", "mdy", "ymd"} {
+	for _, o := range orders {
 		if possible[o] && !(o == "ymd" && (possible["dmy"] || possible["mdy"]) && !sane(days[o])) {
 			left = append(left, o)
 		}
@@ -397,6 +425,18 @@ func (g *guesser) order(column int) {
 	} else if len(left) > 1 {
 		g.ask("order", fmt.Sprintf("dates such as %q may have the day or the month first; say which", g.rows[0][column]), left...)
 	}
+}
+
+// halfDays reports whether the sample writes its clock with AM and PM.
+func (g *guesser) halfDays(column int) bool {
+	for _, cells := range g.rows[:min(len(g.rows), 20)] {
+		for _, c := range cells[min(column, len(cells)):min(column+2, len(cells))] {
+			if low := bytes.ToLower(c); bytes.HasSuffix(low, []byte("am")) || bytes.HasSuffix(low, []byte("pm")) || bytes.HasSuffix(low, []byte(".m.")) {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // sane reports whether days never fall and step by one at most.

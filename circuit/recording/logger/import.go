@@ -291,6 +291,9 @@ func (im *importer) stream(src io.Reader) error {
 	return nil
 }
 
+// longest bounds time stamps [s], a few thousand years: what is beyond was damaged.
+const longest = 1e11
+
 func (im *importer) cell(i int) []byte {
 	if i >= 0 && i < len(im.cells) {
 		return im.cells[i]
@@ -316,7 +319,9 @@ func (im *importer) row() bool {
 		if !ok {
 			return false
 		}
-		x, decimals = im.since(ns, v, d)
+		if x, decimals = im.since(ns, v, d); !(math.Abs(x) < longest) {
+			return false
+		}
 	}
 	if im.begun = true; len(im.steps) == 0 || im.line-im.rows != im.steps[len(im.steps)-1].line-im.steps[len(im.steps)-1].row {
 		im.steps = append(im.steps, step{im.rows, im.line})

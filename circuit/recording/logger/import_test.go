@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"math/rand"
 	"os"
 	"path/filepath"
 	"runtime"
@@ -135,6 +136,39 @@ func TestSpikesAndStuckChannels(t *testing.T) {
 	}
 	if c := found(t, r, "v1: stuck"); c.Count < 120 || c.Count > 121 {
 		t.Errorf("%+v", c)
+	}
+}
+
+// Rest with noise: the offset is the middle of it, not its end. Peaks cut off for half of the time are
+// found; a flat top of a signal that is flat elsewhere too is none.
+func TestRestAndPeaksWithNoise(t *testing.T) {
+	r := rand.New(rand.NewSource(1))
+	var b, flat strings.Builder
+	b.WriteString("t [s];p1 [bar];p2 [bar]\n")
+	flat.WriteString("t [s];p1 [bar]\n")
+	for i := range 1200 {
+		p := 0.0
+		if i%120 > 20 {
+			p = 140
+		}
+		s := float64(i) / 10
+		fmt.Fprintf(&b, "%.1f;%.2f;%.1f\n", s, p-0.8+0.02*r.NormFloat64(), math.Min(250, 220+90*math.Sin(s)+r.NormFloat64()))
+		fmt.Fprintf(&flat, "%.1f;%g\n", s, p)
+	}
+	x := rec(t, b.String())
+	found(t, x, "p1: zero offset")
+	found(t, x, "p2: clipped highest")
+	low, n := 0.0, 0.0
+	for i, p := range x.Find("p1").Values() {
+		if i%120 <= 20 {
+			low, n = low+p, n+1
+		}
+	}
+	if math.Abs(low/n) > 0.003e5 { // 0.02 bar of noise over 210 rows: 0.0014 bar, and their median half as much more
+		t.Errorf("at rest %g Pa are left", low/n)
+	}
+	if x := rec(t, flat.String()); len(x.Corrections) > 0 {
+		t.Errorf("%v", x.Corrections)
 	}
 }
 

@@ -101,8 +101,9 @@ func (q *inspector) pressure() {
 	if s.Dim != units.Pressure {
 		return
 	}
-	low, rest := q.quantile(0), q.quantile(restShare/2)
-	width, top := q.quantile(restShare)-low, q.quantile(1)
+	low, top := q.quantile(0), q.quantile(1)
+	width := q.quantile(restShare) - low
+	rest := q.rest(low + 2*width)
 	gauge := q.pick("absolute pressure", "gauge", "leave")
 	if !s.Absolute {
 		gauge = q.pick("absolute pressure", "leave", "gauge")
@@ -131,9 +132,15 @@ func (q *inspector) pressure() {
 	}
 }
 
+// rest returns the middle of the values up to a limit.
+func (q *inspector) rest(limit float64) float64 {
+	n, _ := slices.BinarySearch(q.sorted, limit)
+	return q.sorted[min(len(q.sorted)-1, n/2)]
+}
+
 // clipped looks for peaks cut off at one value, of a channel that is alive elsewhere.
 func (q *inspector) clipped() {
-	if q.equal > noisyBelow || len(q.v) < 20 {
+	if len(q.v) < 20 {
 		return
 	}
 	for _, end := range []struct {
@@ -159,7 +166,9 @@ func (q *inspector) clipped() {
 			}
 			run = 0
 		}
-		if rows == 0 || end.sign*limit == 0 {
+		pairs := float64(len(q.v) - 1)
+		held := float64(rows - runs) // equal pairs that are those of the stretches themselves
+		if rows == 0 || end.sign*limit == 0 || q.equal*pairs-held > noisyBelow*(pairs-held) {
 			continue
 		}
 		q.say(q.where(Correction{Key: "clipped " + end.name, Count: rows, Warns: true,

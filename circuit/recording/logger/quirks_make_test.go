@@ -233,9 +233,9 @@ var quirks = []quirk{
 		k := 0
 		return []byte(style{head: "Stamp,p1 [bar],q1 [L/min],v1 [mm/s]", stamp: func(s float64) string {
 			if k++; k > 75 {
-				return at(noon, "04/05/2006 15:04:05.000")(s)
+				return "04/05/2024 " + at(noon, "15:04:05.000")(s)
 			}
-			return at(noon, "03/04/2006 15:04:05.000")(s)
+			return "03/04/2024 " + at(noon, "15:04:05.000")(s)
 		}}.text(x)), nil, nil
 	}},
 	from("08-clock-reset", func(x truth) (string, truth) {

@@ -110,7 +110,7 @@ func (tl *timeline) walk() {
 			continue
 		case d < 0 || d > 30*day && d > 100*(prev-t[0]):
 			by := prev + tl.dt - x
-			off, x = off+by, x+by
+			off, x = off+by, prev+tl.dt
 			tl.resets = append(tl.resets, jump{i, by})
 		}
 		t[i], prev = x, x

@@ -13,6 +13,10 @@ const (
 	Poor = 0.05
 )
 
+// leastPerCycle is how many rows a cycle must have for its energy to be judged by them: our
+// choice, two for each of some ten phases.
+const leastPerCycle = 20
+
 // Check is what there is to say about the rate of a recording.
 type Check struct {
 	Interval float64 // s, between rows
@@ -54,7 +58,7 @@ func Of(t, effort, flow []float64, means bool, cycle float64) Check {
 			c.Coarser = append(c.Coarser, Coarser{h, Means(t, effort, flow, h)/c.Energy - 1, spot(t, effort, flow, h, c.Energy)})
 		}
 	}
-	c.judge(means)
+	c.judge(means, cycle)
 	c.cycle(cycle)
 	return c
 }
@@ -64,7 +68,7 @@ func (c *Check) say(warns bool, format string, args ...any) {
 	c.Warns = c.Warns || warns
 }
 
-func (c *Check) judge(means bool) {
+func (c *Check) judge(means bool, cycle float64) {
 	how := "rows are instants; thinned to every second and fourth, the energy changes such that"
 	if means {
 		how = "rows are means, so a product of them leaves out what goes up and down together within one; joined by two and four, the energy changes such that"
@@ -72,6 +76,8 @@ func (c *Check) judge(means bool) {
 	switch {
 	case math.IsNaN(c.Error):
 		c.say(false, "nothing moves under a load: there is no energy to judge the rate by")
+	case cycle > 0 && cycle < leastPerCycle*c.Interval:
+		c.say(true, "logged every %.3g s: fewer than %d rows a cycle are too few to tell the error of their energy (thinned or joined, they differ by %.2g %%); log faster", c.Interval, leastPerCycle, 100*c.Error)
 	case c.Error <= Fair:
 		c.say(false, "logged every %.3g s: %s an error of about %.2g %% is left; fit for energy", c.Interval, how, 100*c.Error)
 	case c.Error <= Poor:
@@ -92,8 +98,8 @@ func (c *Check) cycle(cycle float64) {
 		r = 1 / r
 	}
 	c.Multiple = math.Abs(r - math.Round(r))
-	if c.PerCycle < 20 {
-		c.say(true, "a cycle of %.4g s has %.3g rows; take 20 at least", cycle, c.PerCycle)
+	if c.PerCycle < leastPerCycle {
+		c.say(true, "a cycle of %.4g s has %.3g rows; take %d at least", cycle, c.PerCycle, leastPerCycle)
 		if c.Multiple < 0.02 {
 			c.say(true, "the interval of %.4g s and the cycle of %.4g s are whole multiples of each other: the rows meet the same places of every cycle", c.Interval, cycle)
 		}
@@ -148,14 +154,17 @@ func (c *Check) richardson(energy func(n int) float64) {
 	c.carry(near, far, e1)
 }
 
-// carry takes the change from one interval to two, and from two to four, on to none.
+// carry takes the change from one interval to two, near, and from two to four, far, on to
+// none. Where their ratio is that of no order between 1 and 2, rows are too far apart to
+// follow a law: the first order is taken then, and the larger of what either change tells.
 func (c *Check) carry(near, far, energy float64) {
-	c.Order = 1
-	if near > 0 && far > near {
-		c.Order = math.Min(2, math.Log2(far/near))
+	if ratio := far / near; near > 0 && ratio >= 2 && ratio <= 4 {
+		c.Order = math.Log2(ratio)
+		c.Error = near / (ratio - 1) / energy
+		return
 	}
-	c.Order = math.Max(c.Order, 0.5) // at less, rows are too far apart to tell: the error is then larger than the change
-	c.Error = near / (math.Pow(2, c.Order) - 1) / energy
+	c.Order = 1
+	c.Error = math.Max(near, far/2) / energy
 }
 
 // thinned estimates the error of instants: every n-th row, from each of n starts, worst of them.

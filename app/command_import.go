@@ -1,0 +1,357 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"flag"
+	"fmt"
+	"io"
+	"math"
+	"os"
+	"os/signal"
+	"path/filepath"
+	"strings"
+	"time"
+
+	"barlitre/audit"
+	"barlitre/circuit/recording/cycles"
+	"barlitre/circuit/recording/logger"
+	"barlitre/circuit/recording/rate"
+	"barlitre/machines/units"
+)
+
+// importCall is what the command line of `barlitre import` asks for.
+type importCall struct {
+	file    string
+	rows    int
+	yaml    bool
+	answers [][2]string
+	choices map[string]string
+	rate    []string // two channels
+	cycles  []string // channels that move, then those that are held
+	held    []string
+}
+
+func parseImport(args []string, errs io.Writer) (importCall, error) {
+	c := importCall{choices: map[string]string{}}
+	f := flag.NewFlagSet("barlitre import", flag.ContinueOnError)
+	f.SetOutput(errs)
+	f.IntVar(&c.rows, "rows", 5, "how many of the first and last lines to show")
+	f.BoolVar(&c.yaml, "yaml", false, "print what a duty of an audit file has to say of this recording")
+	f.Func("answer", "answer a question, as in `order=dmy`", func(s string) error {
+		field, choice, ok := strings.Cut(s, "=")
+		c.answers = append(c.answers, [2]string{field, choice})
+		return unless(ok, "write FIELD=CHOICE")
+	})
+	f.Func("choose", "answer a correction otherwise, as in `\"p1: zero offset=leave\"`", func(s string) error {
+		key, choice, ok := strings.Cut(s, "=")
+		c.choices[key] = choice
+		return unless(ok, "write KEY=CHOICE")
+	})
+	f.Func("rate", "check whether `EFFORT,FLOW` (two channels whose product is power) are logged fast enough", func(s string) error {
+		c.rate = strings.Split(s, ",")
+		return unless(len(c.rate) == 2, "name two channels, as in p1,q1")
+	})
+	f.Func("cycles", "find cycles and states by `CHANNEL,...` that move", func(s string) error { c.cycles = strings.Split(s, ","); return nil })
+	f.Func("held", "with -cycles: `CHANNEL,...` that are held, such as pressures", func(s string) error { c.held = strings.Split(s, ","); return nil })
+	files, err := parseMixed(f, args)
+	switch {
+	case err != nil:
+		return c, err
+	case len(files) != 1:
+		return c, errors.New("name one recording")
+	case c.rows < 0 || c.rows > 1000:
+		return c, errors.New("-rows must lie between 0 and 1000")
+	}
+	c.file = files[0]
+	return c, nil
+}
+
+func unless(ok bool, text string) error {
+	if !ok {
+		return errors.New(text)
+	}
+	return nil
+}
+
+// importFile reads a recording as an audit would and prints what was guessed, found and done.
+func importFile(args []string, out, errs io.Writer) int {
+	c, err := parseImport(args, errs)
+	if errors.Is(err, flag.ErrHelp) {
+		return exitOK
+	}
+	if err == nil {
+		err = c.run(out, errs)
+	}
+	if err != nil {
+		fmt.Fprintln(errs, "barlitre import:", err)
+		return exitUnreadable
+	}
+	return exitOK
+}
+
+func (c importCall) run(out, errs io.Writer) error {
+	file, err := logger.Open(c.file)
+	if err != nil {
+		return err
+	}
+	r := file.Guess()
+	for _, a := range c.answers {
+		if err := r.Answer(a[0], a[1]); err != nil {
+			return err
+		}
+	}
+	if len(c.choices) > 0 {
+		r.Choices = c.choices
+	}
+	printRecipe(out, file, r)
+	if p, err := file.Preview(r, c.rows); err == nil {
+		printPreview(out, r, p)
+	}
+	for _, q := range r.Questions {
+		heading(out, "Question")
+		wrap(out, fmt.Sprintf("%s: %s (-answer %s=…)", q.Field, q.Text, q.Field))
+	}
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
+	defer stop()
+	rec, err := file.Import(ctx, r, progressLine(errs))
+	if err != nil {
+		return err
+	}
+	printRecording(out, rec)
+	if len(c.rate) > 0 {
+		if err := printRate(out, rec, c.rate); err != nil {
+			return err
+		}
+	}
+	if len(c.cycles) > 0 {
+		if err := printCycles(out, rec, c.cycles, c.held, c.rate); err != nil {
+			return err
+		}
+	}
+	if c.yaml {
+		text, err := audit.Setup{File: filepath.Base(c.file), SHA256: rec.SHA256, Recipe: r}.Text()
+		if err != nil {
+			return err
+		}
+		heading(out, "For a duty of an audit file")
+		fmt.Fprintln(out, text)
+	}
+	return nil
+}
+
+// progressLine shows how far a long file is, in one line that it writes over.
+func progressLine(w io.Writer) func(done, total int64) {
+	last := time.Now()
+	return func(done, total int64) {
+		if done < total && time.Since(last) < 500*time.Millisecond || total < 64<<20 {
+			return
+		}
+		last = time.Now()
+		fmt.Fprintf(w, "\r%d of %d MB", done>>20, total>>20)
+		if done >= total {
+			fmt.Fprintln(w)
+		}
+	}
+}
+
+func printRecipe(w io.Writer, f *logger.File, r logger.Recipe) {
+	fmt.Fprintf(w, "%s, %d bytes\n", f.Name, f.Size)
+	heading(w, "Guess")
+	head := "none"
+	if r.Head > 0 {
+		head = fmt.Sprintf("line %d", r.Head)
+	}
+	if r.UnitsRow > 0 {
+		head += fmt.Sprintf(", units in line %d", r.UnitsRow)
+	}
+	rows := [][]string{{"text", r.Encoding}, {"separator", r.Separator}, {"decimal sign", r.Decimal}, {"head", head}, {"first row", fmt.Sprintf("line %d", r.First)},
+		{"time stamps", strings.TrimSpace(fmt.Sprintf("%s %s %s %s", r.Time.Form, strings.Join(r.Time.Columns, " and "), r.Time.Order, r.Time.Unit))}}
+	if r.Thousands != "" {
+		rows = append(rows, []string{"thousands", fmt.Sprintf("%q", r.Thousands)})
+	}
+	if r.Time.Counter != "" {
+		rows = append(rows, []string{"record counter", r.Time.Counter})
+	}
+	for _, c := range r.Channels {
+		rows = append(rows, []string{c.Column, channelText(c)})
+	}
+	table(w, rows)
+	for _, why := range r.Reasons {
+		wrap(w, why)
+	}
+}
+
+func channelText(c logger.Channel) string {
+	if c.Text {
+		return "text, kept as marks"
+	}
+	text := c.Quantity
+	if text == "" {
+		text = "plain number"
+	}
+	if c.Unit != "" {
+		text += " in " + c.Unit
+	}
+	if s := c.Scaling; s != nil {
+		text += fmt.Sprintf(", %g to %g %s for %g to %g", s.From[0], s.From[1], s.Signal, s.To[0], s.To[1])
+	}
+	if c.Absolute {
+		text += ", against vacuum"
+	}
+	if c.Counter {
+		text += ", counts up"
+	}
+	if c.Kind != "" {
+		text += ", " + string(c.Kind) + " of an interval"
+	}
+	return text
+}
+
+func printPreview(w io.Writer, r logger.Recipe, p *logger.Preview) {
+	var names []string
+	for _, c := range r.Channels {
+		names = append(names, c.Column)
+	}
+	for _, part := range []struct {
+		title string
+		rows  []logger.PreviewRow
+	}{{"First lines", p.First}, {"Last lines", p.Last}} {
+		heading(w, part.title)
+		for _, row := range part.rows {
+			at := "     …"
+			if row.Line > 0 {
+				at = fmt.Sprintf("%6d", row.Line)
+			}
+			fmt.Fprintf(w, "%s  %s\n", at, row.Text)
+			if !row.Row {
+				continue
+			}
+			var read []string
+			for i, x := range row.SI {
+				if !math.IsNaN(x) {
+					read = append(read, fmt.Sprintf("%s %.6g", names[i], x))
+				}
+			}
+			fmt.Fprintf(w, "        = t %s s, %s (SI)\n", row.Time, strings.Join(read, ", "))
+		}
+	}
+}
+
+func printRecording(w io.Writer, rec *logger.Recording) {
+	heading(w, "Read")
+	show := func(x float64, d units.Dim) string { return units.Format(x, units.Preferred(d, units.Metric), 5) }
+	rows := [][]string{{"rows", fmt.Sprint(len(rec.Time))}, {"lasts", show(rec.Time[len(rec.Time)-1]-rec.Time[0], units.Time)}, {"a row every", show(rec.Interval, units.Time)}, {"SHA-256", rec.SHA256}}
+	if rec.Start != "" {
+		rows = append(rows, []string{"begins", rec.Start})
+	}
+	for _, s := range rec.Series {
+		low, high, sum := math.Inf(1), math.Inf(-1), 0.0
+		v := s.Values()
+		for _, x := range v {
+			low, high, sum = math.Min(low, x), math.Max(high, x), sum+x
+		}
+		rows = append(rows, []string{s.Column, show(low, s.Dim) + " to " + show(high, s.Dim) + ", mean " + show(sum/float64(len(v)), s.Dim)})
+	}
+	table(w, rows)
+	heading(w, "Found and done")
+	if len(rec.Corrections) == 0 {
+		wrap(w, "nothing; the data are as they stand in the file")
+	}
+	for _, c := range rec.Corrections {
+		text := c.String()
+		if c.Warns {
+			text = "⚠ " + text
+		}
+		if len(c.Choices) > 1 {
+			text += fmt.Sprintf(" [%s = %s; may be %s]", c.Key, c.Choice, strings.Join(c.Choices, ", "))
+		}
+		wrap(w, text)
+	}
+	for i, m := range rec.Marks {
+		if i == 20 {
+			wrap(w, fmt.Sprintf("and %d marks more", len(rec.Marks)-i))
+			break
+		}
+		wrap(w, fmt.Sprintf("mark at %.6g s, line %d: %s", m.T, m.Line, m.Text))
+	}
+}
+
+// channelsOf returns the values of channels by their names.
+func channelsOf(rec *logger.Recording, names []string) (out [][]float64, err error) {
+	for _, n := range names {
+		s := rec.Find(strings.TrimSpace(n))
+		if s == nil {
+			return nil, fmt.Errorf("%s has no channel %q", rec.Name, n)
+		}
+		out = append(out, s.Values())
+	}
+	return out, nil
+}
+
+func printRate(w io.Writer, rec *logger.Recording, names []string) error {
+	v, err := channelsOf(rec, names)
+	if err != nil {
+		return err
+	}
+	means := rec.Find(strings.TrimSpace(names[0])).Kind == logger.Mean
+	c := rate.Of(rec.Time, v[0], v[1], means, 0)
+	heading(w, "Rate")
+	for _, text := range c.Remarks {
+		wrap(w, text)
+	}
+	rows := [][]string{{"logged every", "means, then multiplied", "instants, at worst"}}
+	for _, x := range c.Coarser {
+		rows = append(rows, []string{fmt.Sprintf("%g s", x.Interval), fmt.Sprintf("%+.2f %%", 100*x.Means), fmt.Sprintf("%+.1f %%", 100*x.Spot)})
+	}
+	table(w, rows)
+	return nil
+}
+
+func printCycles(w io.Writer, rec *logger.Recording, moving, held, power []string) error {
+	motion, err := channelsOf(rec, moving)
+	if err != nil {
+		return err
+	}
+	level, err := channelsOf(rec, held)
+	if err != nil {
+		return err
+	}
+	in := cycles.Input{T: rec.Time, Motion: motion, Level: level}
+	if len(power) == 2 {
+		v, err := channelsOf(rec, power)
+		if err != nil {
+			return err
+		}
+		in.Power = make([]float64, len(rec.Time))
+		for i := range in.Power {
+			in.Power[i] = v[0][i] * v[1][i]
+		}
+	}
+	r, err := cycles.Find(in, cycles.Options{})
+	if err != nil {
+		return err
+	}
+	heading(w, "Cycles")
+	if r.Period == 0 {
+		wrap(w, "nothing repeats")
+	} else {
+		at := func(i int) string {
+			return fmt.Sprintf("number %d, from %.6g s to %.6g s", i+1, r.Cycles[i].From, r.Cycles[i].To)
+		}
+		rows := [][]string{{"cycles", fmt.Sprintf("%d of %.4g s in the mean, %.4g to %.4g s; likeness %.2f", len(r.Cycles), r.Period, r.Length.Least, r.Length.Most, r.Height)},
+			{"typical", at(r.Typical)}, {"least like it", at(r.Odd)}}
+		if in.Power != nil {
+			e := r.Energy
+			rows = append(rows, []string{"takes the most", at(r.Extreme)}, []string{"energy a cycle", fmt.Sprintf("%.4g kJ ± %.2g (least %.4g, P10 %.4g, P50 %.4g, P90 %.4g, most %.4g)", e.Mean/1e3, e.Deviation/1e3, e.Least/1e3, e.P10/1e3, e.P50/1e3, e.P90/1e3, e.Most/1e3)})
+		}
+		table(w, rows)
+	}
+	var rows [][]string
+	total := rec.Time[len(rec.Time)-1] - rec.Time[0]
+	for _, s := range r.Shares {
+		rows = append(rows, []string{string(s.State), fmt.Sprintf("%.4g s, %.3g %%", s.Time, 100*s.Time/total), fmt.Sprintf("in %d stretches", s.Times)})
+	}
+	table(w, rows)
+	return nil
+}

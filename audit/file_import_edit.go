@@ -1,0 +1,130 @@
+package audit
+
+import (
+	"fmt"
+	"maps"
+	"slices"
+	"strings"
+
+	"gopkg.in/yaml.v3"
+
+	"barlitre/circuit/recording/logger"
+)
+
+// Setup is all that a duty says of the recording that it is taken from.
+type Setup struct {
+	File, SHA256 string // beside the audit file, with forward slashes; of the file as it was looked at
+	Recipe       logger.Recipe
+	Columns      map[string]string            // by track, such as X1.pressure: the channel
+	Derived      map[string]map[string]string // by track: law and what it needs, as in files
+}
+
+// keys writes the keys of a duty, each on one line.
+func (s Setup) keys() ([]string, error) {
+	out := []string{"file: " + encode(s.File, false)}
+	if s.SHA256 != "" {
+		out = append(out, "sha256: "+encode(s.SHA256, false))
+	}
+	recipe, err := onOneLine(s.Recipe)
+	if err != nil {
+		return nil, err
+	}
+	out = append(out, "import: "+recipe)
+	if len(s.Columns) > 0 {
+		text, err := onOneLine(s.Columns)
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, "columns: "+text)
+	}
+	if len(s.Derived) > 0 {
+		text, err := onOneLine(s.Derived)
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, "derived: "+text)
+	}
+	return out, nil
+}
+
+// Text is what stands in a duty of an audit file, line by line, to be copied there by hand.
+func (s Setup) Text() (string, error) {
+	keys, err := s.keys()
+	return strings.Join(keys, "\n"), err
+}
+
+// onOneLine writes a value as YAML between braces.
+func onOneLine(x any) (string, error) {
+	var n yaml.Node
+	if err := n.Encode(x); err != nil {
+		return "", err
+	}
+	n.Style = yaml.FlowStyle
+	text, err := yaml.Marshal(&n)
+	return strings.Join(strings.Fields(string(text)), " "), err
+}
+
+// ImportDuty adds a duty that is taken from a recording; it does not repeat, for a recording
+// seldom ends as it began.
+func (f *File) ImportDuty(name string, s Setup) error {
+	name = oneLine(name)
+	if err := f.mayBeDuty(name); err != nil {
+		return err
+	}
+	keys, err := s.keys()
+	if err != nil {
+		return fmt.Errorf("duty %q: %w", name, err)
+	}
+	d, n := f.draft(), len(f.Duties)
+	if err := d.addItem("duties", append([]string{"name: " + encode(name, true), "repeats: no"}, keys...)); err != nil {
+		return fmt.Errorf("duty %q: %w", name, err)
+	}
+	return f.take(name, d, func(g *File) bool { return g.dutyIndex(name) == n && g.Imports[n] != nil })
+}
+
+// SetImport lets a duty be taken from a recording in place of what it was taken from.
+func (f *File) SetImport(name string, s Setup) error {
+	i, err := f.dutyNamed(name)
+	if err != nil {
+		return err
+	}
+	keys, err := s.keys()
+	if err != nil {
+		return fmt.Errorf("duty %q: %w", name, err)
+	}
+	d := f.draft()
+	for _, key := range []string{"points", "file", "sha256", "import", "columns", "derived"} {
+		if child(d.duty(i), key) == nil {
+			continue
+		}
+		if err := d.cutKey(d.duty(i), key); err != nil {
+			return fmt.Errorf("duty %q: %w", name, err)
+		}
+	}
+	return f.dutyEdit(d, i, d.one(d.src.attach(d.duty(i), keys...)), func(g *File) bool { return g.Imports[i] != nil })
+}
+
+// SetupOf returns how a duty is imported, to be changed and set again; false when it is not.
+func (f *File) SetupOf(name string) (Setup, bool) {
+	i := f.dutyIndex(name)
+	if i < 0 || f.Imports[i] == nil {
+		return Setup{}, false
+	}
+	im := f.Imports[i]
+	s := Setup{File: im.File, SHA256: im.SHA256, Recipe: im.Recipe, Columns: maps.Clone(im.Columns), Derived: map[string]map[string]string{}}
+	for _, d := range im.Derived {
+		s.Derived[d.Track] = maps.Clone(d.Says)
+	}
+	return s, true
+}
+
+// Channels lists what an imported duty has channels of.
+func (im *Import) Channels() []string {
+	var out []string
+	for _, c := range im.Recipe.Channels {
+		if !c.Text && !c.Leave && !slices.Contains(out, c.Column) {
+			out = append(out, c.Column)
+		}
+	}
+	return out
+}
