@@ -51,11 +51,11 @@ func (s *Solution) Requests(system units.System) []Request {
 }
 
 var requestCautions = []string{
-	"The figures come from a model of the circuit, not from a measurement of this cooler; the maker's own check and warranty decide. " +
-		"Compare the heat with a measured one before ordering: oil flow times its temperature drop, or the rise of the tank with the cooler off.",
-	"A cooler is weak against pressure: surges of a return line, and a cylinder whose bore side empties fast, can burst it. It needs a bypass, and a line whose highest pressure is known.",
-	"A cooler in a case drain must not raise the pressure of the case above what the shaft seal of the machine stands.",
-	"Hot oil and surfaces burn. Fans, pressure equipment and electrical connections are matters of the local rules and of those licensed for them; they come before anything printed here.",
+	"The figures come from a model of the circuit; the maker's own check decides. Compare the heat with a measured one before ordering: " +
+		"oil flow times its temperature drop, or the rise of the tank with the cooler off.",
+	"A cooler is weak against pressure: surges, and a cylinder whose bore side empties fast, can burst it. Give it a bypass and a line whose highest pressure is known.",
+	"In a case drain it must not raise the case pressure above what the shaft seal stands. Hot oil and surfaces burn. Pressure equipment and electrical work: " +
+		"local rules and licensed persons come before anything printed here.",
 }
 
 func blank(name, who string) RequestRow { return RequestRow{Name: name, Note: who, Blank: true} }
@@ -123,6 +123,11 @@ func requestOil(p printer, h *HeatStudy) RequestGroup {
 		g.Rows = append(g.Rows, RequestRow{Name: name, Value: value, Note: note})
 	}
 	o := h.Oil
+	if h.Grade != "" {
+		add("Grade", h.Grade, "ISO 3448; taken as mineral oil")
+	} else {
+		g.Rows = append(g.Rows, blank("Grade", "user"))
+	}
 	add("Density, specific heat", p.in(o.Density, units.Density, 3)+", "+p.in(rhoC(&o)/o.Density, units.SpecificHeat, 3), "at "+p.degrees(o.Temperature))
 	add("Viscosity at work", p.in(h.Viscosity(h.Wanted), units.KinematicViscosity, 3), "at "+p.degrees(h.Wanted))
 	if o.Oil.Nu40 > 0 {
@@ -130,7 +135,7 @@ func requestOil(p printer, h *HeatStudy) RequestGroup {
 	} else {
 		g.Rows = append(g.Rows, blank("Viscosity at a winter start", "maker of the oil"))
 	}
-	g.Rows = append(g.Rows, blank("Kind and maker of the fluid, if not mineral oil", "user"))
+	g.Rows = append(g.Rows, blank("Fluid, if not mineral oil", "user"))
 	return g
 }
 

@@ -38,6 +38,7 @@ type Heating struct {
 	Hottest int            // load that makes the oil hottest
 	Peak    float64        // W, highest shaft power of all duties: the heat when a relief valve takes all
 	Oil     circuit.Conditions
+	Grade   string // of the oil, as the file has it
 
 	Wanted, Alarm, WinterStart, HotDay, WorkViscosity, Fouling float64
 	Fans                                                       int
@@ -131,7 +132,7 @@ func (h *HeatStudy) missing(s *Solution) string {
 
 func heatingOf(s *Solution, r *CircuitRun, sec HeatSection) Heating {
 	n := func(key string) float64 { return sec.number(key, &s.Conditions) }
-	h := Heating{Oil: s.Conditions, Wanted: n("wanted"), Alarm: n("alarm"), WinterStart: n("winter_start"), HotDay: n("hot_day"),
+	h := Heating{Oil: s.Conditions, Grade: s.File.Oil.Grade, Wanted: n("wanted"), Alarm: n("alarm"), WinterStart: n("winter_start"), HotDay: n("hot_day"),
 		WorkViscosity: n("work_viscosity"), Fouling: n("fouling"), Fans: int(n("fans"))}
 	for _, d := range r.Duties {
 		if d.Balance != nil {

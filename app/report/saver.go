@@ -21,8 +21,7 @@ import (
 	"barlitre/audit/pdf"
 )
 
-// saveDirVariable names the folder that scripts save into, without a dialog.
-const saveDirVariable = "BARLITRE_SAVE_DIR"
+const saveDirVariable = station.SaveDirVariable
 
 // today is the date of the report.
 var today = time.Now
@@ -99,7 +98,7 @@ func (s *saver) saveFile(what, ext string, write func(io.Writer, *audit.Solution
 			if err != nil {
 				return err
 			}
-			return writeFile(path, func(w io.Writer) error { return write(w, r) })
+			return station.WriteFile(path, func(w io.Writer) error { return write(w, r) })
 		})
 	}
 	if dir := os.Getenv(saveDirVariable); dir != "" {
