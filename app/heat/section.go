@@ -22,6 +22,8 @@ const allCircuits = "all circuits"
 type section struct {
 	ctx     station.Context
 	scope   *widgets.Select
+	group   *widgets.Select // which rows are seen: all at once would be a wall
+	boxes   map[string]*fyne.Container
 	rows    []*sectionRow
 	content fyne.CanvasObject
 	filling bool
@@ -41,20 +43,38 @@ func newSection(ctx station.Context) *section {
 	s := &section{ctx: ctx}
 	s.scope = widgets.Name(widgets.NewSelect([]string{allCircuits}, func(string) { s.show() }), "heat.scope")
 	s.scope.Selected = allCircuits
-	box := container.NewVBox(widgets.Row("Values of", s.scope, nil))
-	group := ""
+	s.group = widgets.Name(widgets.NewSelect(nil, func(string) { s.see() }), "heat.group")
+	s.boxes = map[string]*fyne.Container{}
+	all := container.NewStack()
 	for i := range audit.HeatKeys {
 		k := &audit.HeatKeys[i]
-		if k.Group != group {
-			group = k.Group
-			box.Add(widget.NewLabelWithStyle(group, fyne.TextAlignLeading, fyne.TextStyle{Bold: true}))
+		if s.boxes[k.Group] == nil {
+			s.boxes[k.Group] = container.NewVBox()
+			s.boxes[k.Group].Hide()
+			s.group.Options = append(s.group.Options, k.Group)
+			all.Add(s.boxes[k.Group])
 		}
 		r := s.row(k)
 		s.rows = append(s.rows, r)
-		box.Add(r.object())
+		s.boxes[k.Group].Add(r.object())
 	}
+	s.group.Selected = s.group.Options[0]
+	s.boxes[s.group.Selected].Show()
+	box := container.NewVBox(widgets.Row("Values of", s.scope, nil), widgets.Row("Show", s.group, nil), all)
 	s.content = box
 	return s
+}
+
+// see shows the rows of the group that is chosen.
+func (s *section) see() {
+	for name, box := range s.boxes {
+		if name == s.group.Selected {
+			box.Show()
+		} else {
+			box.Hide()
+		}
+	}
+	s.content.Refresh()
 }
 
 func (s *section) row(k *audit.HeatKey) *sectionRow {
