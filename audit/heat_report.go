@@ -60,6 +60,9 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 		say(circuit.Note, "the oil runs at %s in the mean, warmer than the %s of the energy balance, and is thinner, %s%s",
 			p.degrees(h.Week.Ran), p.degrees(s.Oil), p.in(h.Viscosity(h.Week.Ran), units.KinematicViscosity, 3), more)
 	}
+	if dry := h.Dry(); len(dry) > 0 {
+		say(circuit.Note, "no oil passes the cooler (%s) in %s: nothing is cooled while that goes on", h.Section.Word("cooler_place"), circuit.Names(dry))
+	}
 	for _, k := range h.Checks {
 		if !k.Passed && !k.Fault && !math.IsNaN(k.Highest) {
 			level := circuit.Note

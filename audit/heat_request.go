@@ -7,6 +7,7 @@ import (
 	"math"
 
 	"barlitre/audit/thermal"
+	"barlitre/circuit"
 	"barlitre/machines/units"
 )
 
@@ -67,7 +68,7 @@ func requestLoad(p printer, c *CircuitRun) RequestGroup {
 		g.Rows = append(g.Rows, RequestRow{Name: name, Value: value, Note: note})
 	}
 	design := h.Needs[len(h.Needs)-1]
-	duty := h.Loads[h.Hottest].Name
+	duty := h.Loads[design.Load].Name
 	add("Heat to be taken, mean", p.power(design.Heat), fmt.Sprintf("%s going on, %s put in less %s by the walls", duty, p.power(design.Put), p.power(design.Put-design.Heat)))
 	add("In the mix of the year", p.power(h.Needs[0].Heat), "ordinary day")
 	add("Highest for a short time", p.power(h.Peak), "a relief valve takes all the power; "+h.alarmText())
@@ -151,6 +152,9 @@ func requestFlow(p printer, h *HeatStudy) RequestGroup {
 	add("Oil flow, least / mean / most", p.in(least, units.Flow, 2)+" / "+p.in(mean, units.Flow, 3)+" / "+p.in(most, units.Flow, 3), "while oil flows; means over parts of the cycle, peaks of milliseconds are not in it")
 	if stands > 0.005 {
 		add("Time without flow", p.share(stands), "of the running time: nothing is cooled then")
+	}
+	if dry := h.Dry(); len(dry) > 0 {
+		add("No flow at all in", circuit.Names(dry), "consider an off-line loop, or the case drain")
 	}
 	g.Rows = append(g.Rows, blank("Pulsation, surge at valve switching", "measure, or user"), blank("Highest static pressure of the line", "user"),
 		blank("Pressure drop allowed, warm", "user; common practice 0.5 to 2 bar"), blank("Pressure drop allowed, cold", "user; bypass opens at 2 to 5 bar, common practice"))
