@@ -60,6 +60,9 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 		say(circuit.Note, "the oil runs at %s in the mean, warmer than the %s of the energy balance, and is thinner, %s%s",
 			p.degrees(h.Week.Ran), p.degrees(s.Oil), p.in(h.Viscosity(h.Week.Ran), units.KinematicViscosity, 3), more)
 	}
+	if dry := h.Dry(); len(dry) > 0 {
+		say(circuit.Note, "no oil passes the cooler (%s) in %s: nothing is cooled while that goes on", h.Section.Word("cooler_place"), circuit.Names(dry))
+	}
 	for _, k := range h.Checks {
 		if !k.Passed && !k.Fault && !math.IsNaN(k.Highest) {
 			level := circuit.Note
@@ -130,7 +133,7 @@ func across(t *Table, runs []*CircuitRun, name string, of func(c *CircuitRun, h 
 }
 
 func (s *Solution) temperatureTable(p printer, runs []*CircuitRun) Table {
-	t := Table{Title: "How warm the oil gets", Head: []string{""}}
+	t := Table{Title: "How warm the oil gets", Formula: "C·dT/dt = P(T) − UA·(T − Ta) − s·K·(T_in − Ta)", Head: []string{""}}
 	row := func(name string, of func(c *CircuitRun, h *HeatStudy) string) { across(&t, runs, name, of) }
 	row("oil while the machine runs, mean of the week", func(_ *CircuitRun, h *HeatStudy) string { return p.degrees(h.Week.Ran) })
 	row("viscosity there", func(_ *CircuitRun, h *HeatStudy) string {
@@ -186,7 +189,7 @@ func (c *CircuitRun) coolingDrawn() (sum float64) {
 }
 
 func needTable(p printer, runs []*CircuitRun) Table {
-	t := Table{Title: "Cooler needed for oil at " + p.degrees(runs[0].Warmth.Wanted), Head: []string{""}}
+	t := Table{Title: "Cooler needed for oil at " + p.degrees(runs[0].Warmth.Wanted), Formula: "K = (P − UA·(T − Ta)) / (T_in − Ta)", Head: []string{""}}
 	for i, n := range runs[0].Warmth.Needs {
 		of := func(what func(n CoolerNeed) string) func(*CircuitRun, *HeatStudy) string {
 			return func(_ *CircuitRun, h *HeatStudy) string { return what(h.Needs[i]) }
@@ -222,7 +225,7 @@ func needTable(p printer, runs []*CircuitRun) Table {
 }
 
 func checkTable(p printer, runs []*CircuitRun) Table {
-	t := Table{Title: "Check matrix", Head: []string{""}}
+	t := Table{Title: "Check matrix", Formula: "the march with one thing changed", Head: []string{""}}
 	for i := range runs[0].Warmth.Checks {
 		across(&t, runs, runs[0].Warmth.Checks[i].Case, func(_ *CircuitRun, h *HeatStudy) string { return h.Checks[i].Cell(p.system) })
 	}
@@ -255,7 +258,7 @@ func (c HeatCheck) Cell(system units.System) string {
 }
 
 func tankTable(p printer, runs []*CircuitRun) Table {
-	t := Table{Title: "Another tank", Head: []string{""}}
+	t := Table{Title: "Another tank", Formula: "the march with k times the oil and k^(2/3) times the walls", Head: []string{""}}
 	for i := range runs[0].Warmth.Tanks {
 		volume := p.in(runs[0].Warmth.Tanks[i].Volume, units.Volume, 3)
 		across(&t, runs, volume+": warmest on a hot day; changes over the week by", func(_ *CircuitRun, h *HeatStudy) string {

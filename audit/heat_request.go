@@ -7,6 +7,7 @@ import (
 	"math"
 
 	"barlitre/audit/thermal"
+	"barlitre/circuit"
 	"barlitre/machines/units"
 )
 
@@ -51,11 +52,11 @@ func (s *Solution) Requests(system units.System) []Request {
 }
 
 var requestCautions = []string{
-	"The figures come from a model of the circuit, not from a measurement of this cooler; the maker's own check and warranty decide. " +
-		"Compare the heat with a measured one before ordering: oil flow times its temperature drop, or the rise of the tank with the cooler off.",
-	"A cooler is weak against pressure: surges of a return line, and a cylinder whose bore side empties fast, can burst it. It needs a bypass, and a line whose highest pressure is known.",
-	"A cooler in a case drain must not raise the pressure of the case above what the shaft seal of the machine stands.",
-	"Hot oil and surfaces burn. Fans, pressure equipment and electrical connections are matters of the local rules and of those licensed for them; they come before anything printed here.",
+	"The figures come from a model of the circuit; the maker's own check decides. Compare the heat with a measured one before ordering: " +
+		"oil flow times its temperature drop, or the rise of the tank with the cooler off.",
+	"A cooler is weak against pressure: surges, and a cylinder whose bore side empties fast, can burst it. Give it a bypass and a line whose highest pressure is known.",
+	"In a case drain it must not raise the case pressure above what the shaft seal stands. Hot oil and surfaces burn. Pressure equipment and electrical work: " +
+		"local rules and licensed persons come before anything printed here.",
 }
 
 func blank(name, who string) RequestRow { return RequestRow{Name: name, Note: who, Blank: true} }
@@ -67,7 +68,7 @@ func requestLoad(p printer, c *CircuitRun) RequestGroup {
 		g.Rows = append(g.Rows, RequestRow{Name: name, Value: value, Note: note})
 	}
 	design := h.Needs[len(h.Needs)-1]
-	duty := h.Loads[h.Hottest].Name
+	duty := h.Loads[design.Load].Name
 	add("Heat to be taken, mean", p.power(design.Heat), fmt.Sprintf("%s going on, %s put in less %s by the walls", duty, p.power(design.Put), p.power(design.Put-design.Heat)))
 	add("In the mix of the year", p.power(h.Needs[0].Heat), "ordinary day")
 	add("Highest for a short time", p.power(h.Peak), "a relief valve takes all the power; "+h.alarmText())
@@ -123,6 +124,11 @@ func requestOil(p printer, h *HeatStudy) RequestGroup {
 		g.Rows = append(g.Rows, RequestRow{Name: name, Value: value, Note: note})
 	}
 	o := h.Oil
+	if h.Grade != "" {
+		add("Grade", h.Grade, "ISO 3448; taken as mineral oil")
+	} else {
+		g.Rows = append(g.Rows, blank("Grade", "user"))
+	}
 	add("Density, specific heat", p.in(o.Density, units.Density, 3)+", "+p.in(rhoC(&o)/o.Density, units.SpecificHeat, 3), "at "+p.degrees(o.Temperature))
 	add("Viscosity at work", p.in(h.Viscosity(h.Wanted), units.KinematicViscosity, 3), "at "+p.degrees(h.Wanted))
 	if o.Oil.Nu40 > 0 {
@@ -130,7 +136,7 @@ func requestOil(p printer, h *HeatStudy) RequestGroup {
 	} else {
 		g.Rows = append(g.Rows, blank("Viscosity at a winter start", "maker of the oil"))
 	}
-	g.Rows = append(g.Rows, blank("Kind and maker of the fluid, if not mineral oil", "user"))
+	g.Rows = append(g.Rows, blank("Fluid, if not mineral oil", "user"))
 	return g
 }
 
@@ -146,6 +152,9 @@ func requestFlow(p printer, h *HeatStudy) RequestGroup {
 	add("Oil flow, least / mean / most", p.in(least, units.Flow, 2)+" / "+p.in(mean, units.Flow, 3)+" / "+p.in(most, units.Flow, 3), "while oil flows; means over parts of the cycle, peaks of milliseconds are not in it")
 	if stands > 0.005 {
 		add("Time without flow", p.share(stands), "of the running time: nothing is cooled then")
+	}
+	if dry := h.Dry(); len(dry) > 0 {
+		add("No flow at all in", circuit.Names(dry), "consider an off-line loop, or the case drain")
 	}
 	g.Rows = append(g.Rows, blank("Pulsation, surge at valve switching", "measure, or user"), blank("Highest static pressure of the line", "user"),
 		blank("Pressure drop allowed, warm", "user; common practice 0.5 to 2 bar"), blank("Pressure drop allowed, cold", "user; bypass opens at 2 to 5 bar, common practice"))

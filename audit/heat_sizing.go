@@ -16,13 +16,13 @@ type CoolerNeed struct {
 	Fault string // why none does, or ""
 }
 
-// needs sizes the cooler for an ordinary day, and for the worst duty in the hottest hour. Walls are credited.
+// needs sizes the cooler for an ordinary day, and for the duty that asks for the largest cooler in the hottest hour. Walls are credited.
 func (h *HeatStudy) needs() ([]CoolerNeed, error) {
 	var out []CoolerNeed
 	for _, c := range []CoolerNeed{
 		{Case: "mix of the duties, ordinary day", Load: Mix, Air: h.Plant.Air.Mean},
 		{Case: "mix of the duties, hottest hour", Load: Mix, Air: h.HotDay + h.Plant.Air.Swing},
-		{Case: "worst duty, hottest hour", Load: h.Hottest, Air: h.HotDay + h.Plant.Air.Swing},
+		{Case: "heaviest duty, hottest hour", Load: h.heaviest(), Air: h.HotDay + h.Plant.Air.Swing},
 	} {
 		n, err := h.Plant.Need(c.Load, h.Wanted, c.Air, true)
 		if err != nil {
@@ -38,6 +38,32 @@ func (h *HeatStudy) needs() ([]CoolerNeed, error) {
 		out = append(out, c)
 	}
 	return out, nil
+}
+
+// heaviest is the duty that asks for the largest cooler; where no cooler in its place is enough for any, the worst one.
+func (h *HeatStudy) heaviest() int {
+	load, most := h.Hottest, -1.0
+	for i := 1; i < len(h.Loads); i++ {
+		n, err := h.Plant.Need(i, h.Wanted, h.HotDay+h.Plant.Air.Swing, true)
+		if err == nil && n.Flow > 0 && !math.IsInf(n.Rate, 1) && n.Rate > most {
+			load, most = i, n.Rate
+		}
+	}
+	return load
+}
+
+// Dry names the duties in which no oil passes the cooler: nothing is cooled while they go on.
+func (h *HeatStudy) Dry() []string {
+	if h.Plant.Cooler.None() {
+		return nil
+	}
+	var out []string
+	for i := 1; i < len(h.Loads); i++ {
+		if n, _ := h.Plant.Need(i, h.Wanted, h.Plant.Air.Mean, true); n.Flow <= 0 && n.Put > 0 {
+			out = append(out, h.Loads[i].Name)
+		}
+	}
+	return out
 }
 
 // HeatCheck is one case that a cooler must stand.
@@ -196,7 +222,7 @@ func (h *HeatStudy) tanks() ([]TankCase, error) {
 		if err := p.Prepare(); err != nil {
 			return nil, err
 		}
-		n, _ := p.Need(h.Hottest, h.Wanted, h.HotDay+p.Air.Swing, true)
+		n, _ := p.Need(h.heaviest(), h.Wanted, h.HotDay+p.Air.Swing, true)
 		top, _ := c.Highest()
 		low := top
 		for _, v := range c.Oil {

@@ -38,6 +38,7 @@ type Heating struct {
 	Hottest int            // load that makes the oil hottest
 	Peak    float64        // W, highest shaft power of all duties: the heat when a relief valve takes all
 	Oil     circuit.Conditions
+	Grade   string // of the oil, as the file has it
 
 	Wanted, Alarm, WinterStart, HotDay, WorkViscosity, Fouling float64
 	Fans                                                       int
@@ -131,7 +132,7 @@ func (h *HeatStudy) missing(s *Solution) string {
 
 func heatingOf(s *Solution, r *CircuitRun, sec HeatSection) Heating {
 	n := func(key string) float64 { return sec.number(key, &s.Conditions) }
-	h := Heating{Oil: s.Conditions, Wanted: n("wanted"), Alarm: n("alarm"), WinterStart: n("winter_start"), HotDay: n("hot_day"),
+	h := Heating{Oil: s.Conditions, Grade: s.File.Oil.Grade, Wanted: n("wanted"), Alarm: n("alarm"), WinterStart: n("winter_start"), HotDay: n("hot_day"),
 		WorkViscosity: n("work_viscosity"), Fouling: n("fouling"), Fans: int(n("fans"))}
 	for _, d := range r.Duties {
 		if d.Balance != nil {
@@ -336,74 +337,6 @@ func (h *HeatStudy) readyAt(c *thermal.Course) float64 {
 		}
 	}
 	return math.NaN()
-}
-
-// bookCooling books what the cooling of a circuit draws with each of its duties.
-func (c *CircuitRun) bookCooling() {
-	w := c.Warmth.Week
-	if w.On <= 0 {
-		return
-	}
-	for _, d := range c.Duties {
-		if d.Balance != nil {
-			d.Balance.addCooling(w.Fan/w.On, w.Loop/w.On, c.fuelOf(d.Balance))
-		}
-	}
-}
-
-// Names of what the cooling draws, in balances and tables.
-const (
-	coolingBlock = "Cooling"
-	fanKind      = "fan or water pump"
-	loopKind     = "pump of the off-line loop"
-)
-
-// alternator is the efficiency with which an engine makes the electricity of a fan (assumed, common practice, no source).
-const alternator = 0.6
-
-// fuelOf returns how much fuel power a machine off the mains burns for each watt that its cooling draws, 0 on the mains.
-func (c *CircuitRun) fuelOf(b *Balance) float64 {
-	if !b.offMains() {
-		return 0
-	}
-	for i := range c.Circuit.Blocks {
-		k := circuit.KindNamed(c.Circuit.Blocks[i].Kind)
-		if c.Circuit.Blocks[i].Kind == "engine" && k != nil {
-			if v, _, ok := k.Value(&c.Circuit.Blocks[i], "slope"); ok {
-				return v.SI / alternator
-			}
-		}
-	}
-	return 0
-}
-
-// addCooling books the powers [W] of fan and loop pump over the cycle, whatever the machine does meanwhile. What the loop pump
-// draws warms the oil. With fuel > 0 an engine burns that many watts for each.
-func (b *Balance) addCooling(fan, loop, fuel float64) {
-	each := 1.0
-	if fuel > 0 {
-		each = fuel
-	}
-	add := func(kind string, sink circuit.Sink, power float64) {
-		if power <= 0 {
-			return
-		}
-		e := b.Seconds.Times(power)
-		b.Losses = append(b.Losses, LossRow{Block: coolingBlock, Kind: kind, Sink: sink, Energy: e})
-		b.SupplyIn = b.SupplyIn.Plus(e)
-		if fuel > 0 {
-			b.Fuel = b.Fuel.Plus(e)
-		} else {
-			b.Demand.Mean += power
-		}
-		b.PeakSupply += power
-	}
-	if fuel > 0 { // what the engine loses on the way goes to the air
-		add(fanKind, circuit.ToAir, fan*each+loop*(each-1))
-	} else {
-		add(fanKind, circuit.ToAir, fan)
-	}
-	add(loopKind, circuit.ToOil, loop)
 }
 
 // CycleRipple is how the oil temperature moves within a cycle of a duty.

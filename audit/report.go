@@ -87,6 +87,8 @@ type Table struct {
 	Head  []string
 	Rows  []TableRow
 	Note  string
+	// Formula is what its numbers follow from, where one holds for all; "" else.
+	Formula string
 }
 
 // TableRow is a row; Sum marks one that adds up those above.

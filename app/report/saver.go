@@ -21,8 +21,7 @@ import (
 	"barlitre/audit/pdf"
 )
 
-// saveDirVariable names the folder that scripts save into, without a dialog.
-const saveDirVariable = "BARLITRE_SAVE_DIR"
+const saveDirVariable = station.SaveDirVariable
 
 // today is the date of the report.
 var today = time.Now

@@ -89,6 +89,31 @@ func (c *Check) DumpText() string {
 	return c.Text + "=false"
 }
 
+// Slider is a slider that leaves F1 to the window.
+type Slider struct{ widget.Slider }
+
+// NewSlider makes a slider from low to high in steps.
+func NewSlider(low, high, step float64, changed func(float64)) *Slider {
+	s := &Slider{}
+	s.Min, s.Max, s.Step, s.OnChanged = low, high, step, changed
+	s.Orientation = widget.Horizontal
+	s.ExtendBaseWidget(s)
+	return s
+}
+
+// FocusGained scrolls it into sight.
+func (s *Slider) FocusGained() {
+	s.Slider.FocusGained()
+	reveal(s)
+}
+
+// TypedKey leaves F1 to the window.
+func (s *Slider) TypedKey(k *fyne.KeyEvent) {
+	if !passHelp(s, k) {
+		s.Slider.TypedKey(k)
+	}
+}
+
 // Select is a choice that leaves F1 to the window.
 type Select struct{ widget.Select }
 

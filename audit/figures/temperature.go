@@ -97,11 +97,16 @@ func StudyLanes(circuits []*audit.CircuitRun) (days []TemperatureLane, start Tem
 	for _, c := range circuits {
 		if h := c.Warmth; h != nil && h.Week != nil {
 			for lane, course := range map[*TemperatureLane]*thermal.Course{&days[0]: h.Week, &days[1]: h.Hot, &start: h.Start} {
-				lane.Courses = append(lane.Courses, TemperatureCourse{c.Circuit.Name, course, temperatureRole(c)})
+				lane.Courses = append(lane.Courses, CourseOf(c, course))
 			}
 		}
 	}
 	return days, start
+}
+
+// CourseOf is the course of a circuit in its colour.
+func CourseOf(c *audit.CircuitRun, course *thermal.Course) TemperatureCourse {
+	return TemperatureCourse{c.Circuit.Name, course, temperatureRole(c)}
 }
 
 // temperatureRole is the colour of a circuit.
@@ -110,4 +115,13 @@ func temperatureRole(c *audit.CircuitRun) Role {
 		return RoleGain
 	}
 	return RoleHeat
+}
+
+// Weekdays names the days of a week that begins on Monday 0:00, in hours.
+func Weekdays() []Phase {
+	var out []Phase
+	for i, name := range []string{"Mon", "Tue", "Wed", "Thu", "Fri", "Sat", "Sun"} {
+		out = append(out, Phase{Name: name, From: 24 * float64(i), To: 24 * float64(i+1)})
+	}
+	return out
 }

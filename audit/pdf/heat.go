@@ -49,11 +49,14 @@ func (l *layout) temperatures() {
 		}
 	}
 	draw := func(title string, f figures.Plot) {
-		l.heading(3, title, 2+figureLeast*f.Height(fullW/figureLeast))
-		l.figure(f.Height, func(p pen.Pen, w, h float64) { f.Draw(p, w, h, l.pal) })
+		high := func(w float64) float64 { return f.Height(w) + 50*float64(len(f.Lanes)) }
+		l.heading(3, title, 2+figureLeast*high(fullW/figureLeast))
+		l.figure(high, func(p pen.Pen, w, h float64) { f.Draw(p, w, h, l.pal) })
 		l.y += 2 * l.sheet.room
 	}
-	draw("Oil over the week that repeats itself, from Monday 0:00", figures.TemperaturePlot(days, limits, u, 0, thermal.Week))
+	week := figures.TemperaturePlot(days, limits, u, 0, thermal.Week)
+	week.Phases = figures.Weekdays()
+	draw("Oil over the week that repeats itself", week)
 	span := start.Courses[0].Course.T
 	draw("Oil after a cold start", figures.TemperaturePlot([]figures.TemperatureLane{start}, limits, u, 0, span[len(span)-1]))
 	for _, t := range l.r.Warmth {
