@@ -139,3 +139,31 @@ func TestReliefPriceCoversTheSpill(t *testing.T) {
 		t.Error("nothing is spilled")
 	}
 }
+
+// The circuit with its faults cured can be added to the file; audited there it draws what the ladder says it would with the
+// habit left as it is.
+func TestAddCured(t *testing.T) {
+	s, l := whole(t, nil)
+	f := s.File.Clone()
+	if !l.Changes() {
+		t.Fatal("nothing to change")
+	}
+	if err := l.AddCured(f, "Put right"); err != nil {
+		t.Fatal(err)
+	}
+	got := solve(t, f)
+	want, err := fixfirst.Apply(s.File, l.Faultless())
+	if err != nil {
+		t.Fatal(err)
+	}
+	cured := solve(t, want).Circuits[0].Year.Drawn.Total()
+	for _, c := range got.Circuits {
+		if c.Circuit.Name == "Put right" {
+			if x := c.Year.Drawn.Total(); !near(x, cured, cured) || !c.Proposal {
+				t.Errorf("the added circuit draws %g J, cured it draws %g J (proposal %t)", x, cured, c.Proposal)
+			}
+			return
+		}
+	}
+	t.Error("it was not added")
+}
