@@ -87,6 +87,9 @@ func (p *Payback) saving(w station.What) {
 		p.inputs.show()
 	}
 	if w.Has(station.Solution | station.Settings | station.Model) {
+		p.ctx.Doc().Advise(p.ctx.System())
+	}
+	if w.Has(station.Solution | station.Settings | station.Model | station.Advice) {
 		p.figures()
 	}
 }

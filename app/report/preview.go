@@ -48,6 +48,7 @@ type request struct {
 	system  units.System
 	width   float32
 	palette figures.Palette // of the edges
+	advised bool            // with what to put right first and the site check
 }
 
 func newPreview(ctx station.Context, options func() pdf.Options) *preview {
@@ -93,7 +94,7 @@ func (p *preview) turn(by float32) {
 // load lays the report out and draws it, in the background; a later request overtakes it.
 func (p *preview) load() {
 	opt, width := p.options(), widths[p.size]*widgets.Scale()
-	ask := request{p.ctx.Solution(), fmt.Sprint(opt.Without), opt.System, width, p.ctx.Palette()}
+	ask := request{p.ctx.Solution(), fmt.Sprint(opt.Without), opt.System, width, p.ctx.Palette(), len(opt.SiteCheck) > 0}
 	if ask == p.asked && ask.of != nil {
 		p.state()
 		return

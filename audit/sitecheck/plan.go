@@ -48,7 +48,7 @@ func NewPlan(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt 
 		return nil, err
 	}
 	if asDrawn != "" {
-		out.Faults = append(out.Faults, &Fault{Name: "as drawn, with " + asDrawn, Do: "What to do stands under Fix first.", model: []Model{modelOf(p, out.Points)}})
+		out.Faults = append(out.Faults, &Fault{Name: "the machine is as drawn, with " + asDrawn, Do: "What to do stands under Fix first.", model: []Model{modelOf(p, out.Points)}})
 	}
 	opt.Cache.put(key, out)
 	return out, nil
