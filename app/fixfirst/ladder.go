@@ -28,11 +28,11 @@ func newLadder(ctx station.Context, l *fixfirst.Ladder, page fixfirst.Page, i in
 	part.content.Add(title)
 	part.content.Add(part.text(numbered("fixfirst.verdict", i), page.Verdict, widget.MediumImportance))
 	if len(page.Items) > 0 {
-		part.table(numbered("fixfirst.ladder", i), page.Ladder, in)
+		part.table(numbered("fixfirst.ladder", i), page.Head, page.Rows, page.Note, in)
 	}
 	for j, s := range page.Splits {
 		part.content.Add(part.text(numbered("fixfirst.split", j), s.Text, widget.MediumImportance))
-		part.table(numbered("fixfirst.split.table", j), s.Table, in)
+		part.table(numbered("fixfirst.split.table", j), s.Head, s.Rows, "", in)
 	}
 	if l.Changes() {
 		add := widgets.Name(widgets.NewButton("Add the circuit put right", part.add), numbered("fixfirst.add", i))
@@ -60,28 +60,19 @@ func (l *ladder) text(name, text string, importance widget.Importance) *widget.L
 	return t
 }
 
-// table shows a table of words and prices.
-func (l *ladder) table(name string, t audit.Table, in *container.Scroll) {
-	first := 0
-	if len(t.Head) > 5 { // the number stands before the words
-		first = 1
-	}
+// table shows rows of figures, each of which opens its calculation.
+func (l *ladder) table(name string, head []string, rows []fixfirst.Row, note string, in *container.Scroll) {
 	f := widgets.NewFigureTable(l.ctx.Palette, l.ctx.Explain, l.ctx.Local)
 	widgets.Name(f.Table, name)
 	f.In(in)
-	var rows []widgets.FigureRow
-	for _, r := range t.Rows {
-		row := widgets.FigureRow{Name: strings.TrimSpace(strings.Join(r.Cells[:first+1], "  ")), Sum: r.Sum}
-		for _, c := range r.Cells[first+1:] {
-			row.Cells = append(row.Cells, audit.Figure{Text: c})
-		}
-		rows = append(rows, row)
+	var out []widgets.FigureRow
+	for _, r := range rows {
+		out = append(out, widgets.FigureRow(r))
 	}
-	head := append([]string{strings.TrimSpace(strings.Join(t.Head[:first+1], " "))}, t.Head[first+1:]...)
-	f.Set(head, rows)
+	f.Set(head, out)
 	l.content.Add(f.Table)
-	if t.Note != "" {
-		l.content.Add(l.text("", t.Note, widget.LowImportance))
+	if note != "" {
+		l.content.Add(l.text("", note, widget.LowImportance))
 	}
 }
 
