@@ -52,8 +52,9 @@ type Split struct {
 	Proposal     string
 	Whole        Saving // as found against the proposal, as the verdict has it
 	Class        map[Class]Saving
-	Architecture Saving // as found with its faults cured, against the proposal
-	Year         Year   // of the proposal
+	Architecture Saving        // as found with its faults cured, against the proposal
+	Year         Year          // of the proposal
+	Payback      audit.Payback // of its cost by what it adds
 	// Besides is what the proposal would draw less if it were switched off in the same hours; it is in no other figure.
 	Besides Saving
 }
@@ -219,6 +220,7 @@ func (l *Ladder) inOrder(ctx context.Context, f *audit.File, last outcome, cache
 func (l *Ladder) split(c *audit.Comparison, base, cured outcome) Split {
 	p := outcomeOf(c.Proposal)
 	s := Split{Proposal: c.Proposal.Circuit.Name, Whole: less(base, p), Class: l.Class, Architecture: less(cured, p), Year: yearOf(p)}
+	s.Payback = audit.SimplePayback(c.Proposal.Cost, s.Architecture.Money)
 	for _, x := range l.Steps {
 		if !x.Habit || x.Unpriced != "" {
 			continue

@@ -77,6 +77,9 @@ func TestSplit(t *testing.T) {
 	if !near(sum.Energy, verdict.SavedDrawn, verdict.SavedDrawn) || !near(sum.Money, verdict.MoneySaved, verdict.MoneySaved) || !near(sum.Heat, verdict.SavedHeat, verdict.SavedHeat) {
 		t.Errorf("split %+v, verdict %g J, %g, %g W", sum, verdict.SavedDrawn, verdict.MoneySaved, verdict.SavedHeat)
 	}
+	if cost := verdict.Proposal.Cost.Likely; !near(x.Payback.Likely, cost/x.Architecture.Money, x.Payback.Likely) || x.Payback.Likely <= verdict.Payback.Likely {
+		t.Errorf("payback of what it adds %g years, cost %g, verdict %g years", x.Payback.Likely, cost, verdict.Payback.Likely)
+	}
 	for _, c := range fixfirst.Classes() {
 		if x.Class[c].Energy == 0 {
 			t.Errorf("nothing by %s", c)

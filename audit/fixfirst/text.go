@@ -217,6 +217,9 @@ func (w words) split(l *Ladder, s Split) SplitPage {
 	if s.Whole.Energy <= 0 || l.Total().Energy <= 0 {
 		page.Text = fmt.Sprintf("Against %s with its faults cured, %s saves %s.", l.Circuit, s.Proposal, w.both(s.Architecture))
 	}
+	if s.Payback.None == "" && l.Total().Energy != 0 {
+		page.Text += fmt.Sprintf(" By what it adds alone, its cost comes back in %s.", s.Payback)
+	}
 	if s.Besides.Energy > 0 {
 		page.Text += fmt.Sprintf(" Switched off in the same hours, it would draw %s less besides.", w.both(s.Besides))
 	}
