@@ -11,11 +11,11 @@ import (
 func printFixFirst(w io.Writer, p fixfirst.Page, details bool) {
 	heading(w, "Fix first: "+p.Circuit)
 	wrap(w, p.Verdict)
-	auditTable(w, p.Ladder)
+	auditTable(w, p.Ladder())
 	for _, s := range p.Splits {
 		fmt.Fprintln(w)
 		wrap(w, s.Text)
-		auditTable(w, s.Table)
+		auditTable(w, s.Table())
 	}
 	if !details {
 		if len(p.Items) > 0 {

@@ -165,6 +165,8 @@ func (f *Frame) told(e document.Event) {
 		f.changed(station.Solution)
 	case document.Solving:
 		f.verdict.Refresh()
+	case document.Advising, document.Advised:
+		f.changed(station.Advice)
 	default:
 		if e.Err != nil {
 			f.Say(e.Err.Error())

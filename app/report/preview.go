@@ -48,6 +48,7 @@ type request struct {
 	system  units.System
 	width   float32
 	palette figures.Palette // of the edges
+	advised bool            // with what to put right first and the site check
 }
 
 func newPreview(ctx station.Context, options func() pdf.Options) *preview {
@@ -94,7 +95,7 @@ func (p *preview) turn(by float32) {
 func (p *preview) load() {
 	opt, width := p.options(), widths[p.size]*widgets.Scale()
 	all, _ := p.ctx.Doc().Solution()
-	ask := request{all, fmt.Sprint(opt.Without, opt.Sheets), opt.System, width, p.ctx.Palette()}
+	ask := request{all, fmt.Sprint(opt.Without, opt.Sheets), opt.System, width, p.ctx.Palette(), len(opt.SiteCheck) > 0}
 	if ask == p.asked && ask.of != nil {
 		p.state()
 		return

@@ -11,6 +11,7 @@ import (
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
+	"barlitre/app/document"
 	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
@@ -113,6 +114,19 @@ func (r *Report) options() pdf.Options {
 		v := r.ctx.View()
 		opt.Sheets = &pdf.View{Duty: r.ctx.Duty(), At: r.ctx.Clock(), Cycle: v.Cycle, Hide: v.Hide, Marks: figures.Marks(r.ctx.Doc().Findings())}
 	}
+	if a, current := r.ctx.Doc().Advice(); current && a.System == opt.System {
+		opt = withAdvice(opt, a)
+	}
+	return opt
+}
+
+// withAdvice adds what is to be put right first and what to measure.
+func withAdvice(opt pdf.Options, a *document.Advice) pdf.Options {
+	opt.FixFirst = nil
+	for _, l := range a.Ladders {
+		opt.FixFirst = append(opt.FixFirst, l.Page(a.System))
+	}
+	opt.SiteCheck = a.Plans
 	return opt
 }
 
@@ -147,6 +161,7 @@ func (r *Report) Help() string {
 		"File > Sheets as PDF prints the two circuits that are shown alone, on A4 or A3.\n\n" +
 		"Save PDF… writes the report, with the figures of all circuits as they are now. Save JSON… writes every result as numbers in SI units, for other programs. " +
 		"Save CSV… writes a table of every time step for each circuit and duty into a folder; for that the audit is solved once more, which can be cancelled.\n\n" +
+		"What to put right first and the site check are worked out behind the window and come into the pages when they are ready; a PDF that is saved waits for them.\n\n" +
 		"Files are put in place when they are whole. When something fails, the message says what and where, and the audit stays open as it was."
 }
 
@@ -156,6 +171,9 @@ func (r *Report) Changed(w station.What) {
 		r.show()
 	}
 	if w.Has(station.Solution | station.Settings | station.Model) {
+		r.ctx.Doc().Advise(r.ctx.System())
+	}
+	if w.Has(station.Solution | station.Settings | station.Model | station.Advice) {
 		r.saver.refresh()
 		r.preview.load()
 	} else if w.Has(station.Clock) {

@@ -83,22 +83,39 @@ func (s *saver) base() string {
 
 func (s *saver) savePDF() {
 	opt := s.options()
-	s.saveFile("the report", ".pdf", func(w io.Writer, r *audit.Solution) error { return pdf.Write(w, r, opt) })
+	s.saveFile("the report", ".pdf", func(ctx context.Context, w io.Writer, r *audit.Solution) error {
+		a, err := s.ctx.Doc().AdviceOn(ctx, r, opt.System, s.progress())
+		if err != nil {
+			return err
+		}
+		return pdf.Write(w, r, withAdvice(opt, a))
+	})
 }
 
 func (s *saver) saveJSON() {
-	s.saveFile("the results", ".json", func(w io.Writer, r *audit.Solution) error { return r.Result().Write(w) })
+	system := s.ctx.System()
+	s.saveFile("the results", ".json", func(ctx context.Context, w io.Writer, r *audit.Solution) error {
+		a, err := s.ctx.Doc().AdviceOn(ctx, r, system, s.progress())
+		if err != nil {
+			return err
+		}
+		out := r.Result()
+		for _, l := range a.Ladders {
+			out.FixFirst = append(out.FixFirst, l.Result())
+		}
+		return out.Write(w)
+	})
 }
 
 // saveFile asks for a name and writes one file.
-func (s *saver) saveFile(what, ext string, write func(io.Writer, *audit.Solution) error) {
+func (s *saver) saveFile(what, ext string, write func(context.Context, io.Writer, *audit.Solution) error) {
 	do := func(path string) {
 		s.work(what, path, func(ctx context.Context, progress func(int, int)) error {
 			r, err := s.solution(ctx, progress)
 			if err != nil {
 				return err
 			}
-			return station.WriteWhole(path, func(w io.Writer) error { return write(w, r) })
+			return station.WriteWhole(path, func(w io.Writer) error { return write(ctx, w, r) })
 		})
 	}
 	if dir := os.Getenv(saveDirVariable); dir != "" {

@@ -23,13 +23,14 @@ const (
 	Clock                      // the clock moved
 	Settings                   // theme, units, decimal sign, scale
 	Selection                  // another block, circuit or duty is selected
+	Advice                     // what is to be put right first, or how far the work on it is
 )
 
 // Has reports whether w holds x.
 func (w What) Has(x What) bool { return w&x != 0 }
 
 // Everything is what changes when another file is opened.
-const Everything = Model | Solution | Clock | Settings | Selection
+const Everything = Model | Solution | Clock | Settings | Selection | Advice
 
 // Station is one page of the job. All methods are called on the UI goroutine.
 type Station interface {

@@ -66,9 +66,9 @@ func solve(t *testing.T, f *audit.File) *audit.Solution {
 // faults lists what is found that is no habit.
 func faults(s *audit.Solution) []*fixfirst.Finding {
 	var out []*fixfirst.Finding
-	for _, fs := range fixfirst.Found(s, units.Metric) {
-		for _, f := range fs {
-			if !f.Habit {
+	for _, run := range s.Circuits {
+		for _, f := range fixfirst.Detect(s, run, units.Metric) {
+			if !f.Habit && !run.Proposal {
 				out = append(out, f)
 			}
 		}

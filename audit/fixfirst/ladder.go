@@ -19,6 +19,9 @@ type Step struct {
 	Cure     Cure    // that was priced
 	Alone    Saving  // cured alone
 	InOrder  Saving  // cured after those above it
+	Without  Year    // with it cured alone
+	Before   Year    // with those above it cured
+	After    Year    // with it cured as well
 	Regained float64 // s a cycle by which axes fell short, and do no more when it is cured alone
 	Unpriced string  // why there is no price, "" where there is one
 }
@@ -33,8 +36,6 @@ type Ladder struct {
 	Class    map[Class]Saving
 	Splits   []Split // by proposal
 	Edits    Cure    // all cures that were priced, in order
-
-	CuredFile *audit.File // with them
 }
 
 // Year is a year of a circuit.
@@ -51,7 +52,9 @@ type Split struct {
 	Proposal     string
 	Whole        Saving // as found against the proposal, as the verdict has it
 	Class        map[Class]Saving
-	Architecture Saving // as found with its faults cured, against the proposal
+	Architecture Saving        // as found with its faults cured, against the proposal
+	Year         Year          // of the proposal
+	Payback      audit.Payback // of its cost by what it adds
 	// Besides is what the proposal would draw less if it were switched off in the same hours; it is in no other figure.
 	Besides Saving
 }
@@ -61,17 +64,6 @@ type Options struct {
 	Cache    *Cache
 	System   units.System
 	Progress func(done, total int) // from any goroutine, one call at a time
-}
-
-// Found reports what Detect finds in the circuits as found of a solution, by circuit.
-func Found(s *audit.Solution, system units.System) map[string][]*Finding {
-	out := map[string][]*Finding{}
-	for _, run := range s.Circuits {
-		if !run.Proposal {
-			out[run.Circuit.Name] = Detect(s, run, system)
-		}
-	}
-	return out
 }
 
 // All climbs for every circuit as found of a solution.
@@ -100,7 +92,7 @@ func Climb(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt Op
 		opt.Cache = &Cache{}
 	}
 	base := outcomeOf(run)
-	l := &Ladder{Circuit: run.Circuit.Name, Currency: s.Tariff.Currency, AsFound: yearOf(base), Class: map[Class]Saving{}, CuredFile: s.File}
+	l := &Ladder{Circuit: run.Circuit.Name, Currency: s.Tariff.Currency, AsFound: yearOf(base), Class: map[Class]Saving{}}
 	for _, f := range Detect(s, run, opt.System) {
 		l.Steps = append(l.Steps, &Step{Finding: f, Alone: unknown, InOrder: unknown})
 	}
@@ -162,7 +154,7 @@ func (l *Ladder) alone(ctx context.Context, f *audit.File, base outcome, cache *
 			errs[i] = guarded(x, func() error {
 				_, edits, o, why, err := cache.choose(ctx, f, base, x.Finding)
 				if err == nil && why == "" {
-					x.Cure, x.Alone, x.Regained = edits, less(base, o), base.short-o.short
+					x.Cure, x.Alone, x.Without, x.Regained = edits, less(base, o), yearOf(o), base.short-o.short
 				}
 				x.Unpriced = why
 				return err
@@ -217,18 +209,18 @@ func (l *Ladder) inOrder(ctx context.Context, f *audit.File, last outcome, cache
 			x.Unpriced = "after those above it: " + why
 			continue
 		}
-		x.InOrder = less(last, o)
+		x.InOrder, x.Before, x.After = less(last, o), yearOf(last), yearOf(o)
 		l.Class[x.Class] = l.Class[x.Class].Plus(x.InOrder)
 		l.Edits = append(l.Edits, edits...)
 		f, last = g, o
 	}
-	l.CuredFile = f
 	return last, nil
 }
 
 func (l *Ladder) split(c *audit.Comparison, base, cured outcome) Split {
 	p := outcomeOf(c.Proposal)
-	s := Split{Proposal: c.Proposal.Circuit.Name, Whole: less(base, p), Class: l.Class, Architecture: less(cured, p)}
+	s := Split{Proposal: c.Proposal.Circuit.Name, Whole: less(base, p), Class: l.Class, Architecture: less(cured, p), Year: yearOf(p)}
+	s.Payback = audit.SimplePayback(c.Proposal.Cost, s.Architecture.Money)
 	for _, x := range l.Steps {
 		if !x.Habit || x.Unpriced != "" {
 			continue

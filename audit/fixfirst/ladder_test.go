@@ -77,6 +77,9 @@ func TestSplit(t *testing.T) {
 	if !near(sum.Energy, verdict.SavedDrawn, verdict.SavedDrawn) || !near(sum.Money, verdict.MoneySaved, verdict.MoneySaved) || !near(sum.Heat, verdict.SavedHeat, verdict.SavedHeat) {
 		t.Errorf("split %+v, verdict %g J, %g, %g W", sum, verdict.SavedDrawn, verdict.MoneySaved, verdict.SavedHeat)
 	}
+	if cost := verdict.Proposal.Cost.Likely; !near(x.Payback.Likely, cost/x.Architecture.Money, x.Payback.Likely) || x.Payback.Likely <= verdict.Payback.Likely {
+		t.Errorf("payback of what it adds %g years, cost %g, verdict %g years", x.Payback.Likely, cost, verdict.Payback.Likely)
+	}
 	for _, c := range fixfirst.Classes() {
 		if x.Class[c].Energy == 0 {
 			t.Errorf("nothing by %s", c)
@@ -138,4 +141,32 @@ func TestReliefPriceCoversTheSpill(t *testing.T) {
 	if spill <= 0 {
 		t.Error("nothing is spilled")
 	}
+}
+
+// The circuit with its faults cured can be added to the file; audited there it draws what the ladder says it would with the
+// habit left as it is.
+func TestAddCured(t *testing.T) {
+	s, l := whole(t, nil)
+	f := s.File.Clone()
+	if !l.Changes() {
+		t.Fatal("nothing to change")
+	}
+	if err := l.AddCured(f, "Put right"); err != nil {
+		t.Fatal(err)
+	}
+	got := solve(t, f)
+	want, err := fixfirst.Apply(s.File, l.Faultless())
+	if err != nil {
+		t.Fatal(err)
+	}
+	cured := solve(t, want).Circuits[0].Year.Drawn.Total()
+	for _, c := range got.Circuits {
+		if c.Circuit.Name == "Put right" {
+			if x := c.Year.Drawn.Total(); !near(x, cured, cured) || !c.Proposal {
+				t.Errorf("the added circuit draws %g J, cured it draws %g J (proposal %t)", x, cured, c.Proposal)
+			}
+			return
+		}
+	}
+	t.Error("it was not added")
 }

@@ -56,6 +56,7 @@ type SplitResult struct {
 	Classes      map[Class]SavingResult `json:"classes"`
 	Architecture SavingResult           `json:"architecture"`
 	Besides      SavingResult           `json:"switched_off_besides"`
+	Payback      audit.RangeResult      `json:"payback_years_by_what_it_adds"`
 }
 
 const kWh = 3.6e6 // J
@@ -80,7 +81,8 @@ func (l *Ladder) Result() Result {
 		r.Steps = append(r.Steps, s)
 	}
 	for _, s := range l.Splits {
-		x := SplitResult{Proposal: s.Proposal, Whole: savingResult(s.Whole), Classes: map[Class]SavingResult{}, Architecture: savingResult(s.Architecture), Besides: savingResult(s.Besides)}
+		x := SplitResult{Proposal: s.Proposal, Whole: savingResult(s.Whole), Classes: map[Class]SavingResult{}, Architecture: savingResult(s.Architecture), Besides: savingResult(s.Besides),
+			Payback: audit.RangeResult{Low: audit.Number(s.Payback.Low), Likely: audit.Number(s.Payback.Likely), High: audit.Number(s.Payback.High)}}
 		for _, c := range Classes() {
 			x.Classes[c] = savingResult(s.Class[c])
 		}

@@ -12,10 +12,42 @@ import (
 // Page is a ladder in words, for a terminal, paper and the window.
 type Page struct {
 	Circuit string
-	Verdict string      // in a sentence or two
-	Ladder  audit.Table // the steps in order with their prices
+	Verdict string   // in a sentence or two
+	Head    []string // of Rows
+	Rows    []Row    // the steps in order with their prices
+	Note    string   // below them
 	Items   []Item
 	Splits  []SplitPage
+}
+
+// Row is a row of figures.
+type Row struct {
+	Name  string
+	Cells []audit.Figure
+	Sum   bool
+}
+
+// tableOf is a table of rows.
+func tableOf(title, note string, head []string, rows []Row) audit.Table {
+	t := audit.Table{Title: title, Head: head, Note: note}
+	for _, r := range rows {
+		cells := []string{r.Name}
+		for _, c := range r.Cells {
+			cells = append(cells, c.Text)
+		}
+		t.Rows = append(t.Rows, audit.TableRow{Cells: cells, Sum: r.Sum})
+	}
+	return t
+}
+
+// Ladder is the steps as a table.
+func (p Page) Ladder() audit.Table {
+	return tableOf("What to put right, in this order", p.Note, p.Head, p.Rows)
+}
+
+// Table is the split as a table.
+func (s SplitPage) Table() audit.Table {
+	return tableOf("Where the saving of "+s.Proposal+" comes from", "", s.Head, s.Rows)
 }
 
 // Item is a step in words.
@@ -39,13 +71,15 @@ type Item struct {
 type SplitPage struct {
 	Proposal string
 	Text     string
-	Table    audit.Table
+	Head     []string
+	Rows     []Row
 }
 
 // Page puts a ladder into words.
 func (l *Ladder) Page(system units.System) Page {
 	w := words{l.Currency, system}
-	p := Page{Circuit: l.Circuit, Verdict: w.verdict(l), Ladder: w.ladder(l)}
+	p := Page{Circuit: l.Circuit, Verdict: w.verdict(l), Head: []string{"what", "takes", "alone", "", "in order", ""}, Rows: w.ladder(l),
+		Note: "A year. First what costs nothing, then service, then parts; within each the largest saving first. \"Alone\" is the saving if nothing else is done, \"in order\" what it adds to those above it. Both come from balancing the circuit again with the cure in it."}
 	for i, x := range l.Steps {
 		p.Items = append(p.Items, w.item(i+1, x))
 	}
@@ -113,17 +147,37 @@ func (w words) verdict(l *Ladder) string {
 		faults, l.Circuit, w.energy(l.Cured.Drawn), w.energy(l.AsFound.Drawn), w.both(total), share)
 }
 
-func (w words) ladder(l *Ladder) audit.Table {
-	t := audit.Table{Title: "What to put right, in this order", Head: []string{"", "what", "takes", "alone", "", "in order", ""},
-		Note: "A year. First what costs nothing, then service, then parts; within each the largest saving first. \"Alone\" is the saving if nothing else is done, \"in order\" what it adds to those above it. Both come from balancing the circuit again with the cure in it."}
+func (w words) ladder(l *Ladder) []Row {
+	var rows []Row
 	for i, x := range l.Steps {
-		t.Rows = append(t.Rows, audit.TableRow{Cells: []string{fmt.Sprint(i + 1), x.Name(), x.Effort.short(), w.energy(x.Alone.Energy), w.money(x.Alone.Money), w.energy(x.InOrder.Energy), w.money(x.InOrder.Money)}})
+		r := Row{Name: fmt.Sprintf("%d  %s", i+1, x.Name()), Cells: []audit.Figure{{Text: x.Effort.short()}}}
+		r.Cells = append(r.Cells, w.figures(x.Name()+", cured alone", x.Alone, l.AsFound, x.Without, x.Cure.String())...)
+		r.Cells = append(r.Cells, w.figures(x.Name()+", after those above it", x.InOrder, x.Before, x.After, x.Cure.String())...)
+		rows = append(rows, r)
 	}
 	if len(l.Steps) > 0 {
-		sum := l.Total()
-		t.Rows = append(t.Rows, audit.TableRow{Sum: true, Cells: []string{"", "all, in order", "", "", "", w.energy(sum.Energy), w.money(sum.Money)}})
+		r := Row{Name: "all, in order", Sum: true, Cells: []audit.Figure{{}, {}, {}}}
+		rows = append(rows, Row{r.Name, append(r.Cells, w.figures("all, in order", l.Total(), l.AsFound, l.Cured, l.Edits.String())...), true})
 	}
-	return t
+	return rows
+}
+
+// figures are a saving in energy and money, with where they come from.
+func (w words) figures(name string, s Saving, before, after Year, with string) []audit.Figure {
+	energy := audit.Figure{Name: name + ": energy a year", Value: s.Energy, Text: w.energy(s.Energy)}
+	money := audit.Figure{Name: name + ": money a year", Value: s.Money, Text: w.money(s.Money)}
+	if math.IsNaN(s.Energy) {
+		return []audit.Figure{energy, money}
+	}
+	source := "the circuit balanced twice over the year of its duties"
+	if with != "" {
+		source += "; with " + with
+	}
+	energy.Calculation = audit.Calculation{Formula: "saving = E_before − E_after", Numbers: fmt.Sprintf("%s − %s = %s", w.energy(before.Drawn), w.energy(after.Drawn), energy.Text), Source: source}
+	if w.currency != "" && !math.IsNaN(s.Money) {
+		money.Calculation = audit.Calculation{Formula: "saving = K_before − K_after, K the cost of energy a year", Numbers: fmt.Sprintf("%s − %s = %s", w.money(before.Money), w.money(after.Money), money.Text), Source: source}
+	}
+	return []audit.Figure{energy, money}
 }
 
 func (e Effort) short() string { return [...]string{"nothing", "service", "a part"}[e] }
@@ -143,26 +197,28 @@ func (w words) item(n int, x *Step) Item {
 }
 
 func (w words) split(l *Ladder, s Split) SplitPage {
-	t := audit.Table{Title: "Where the saving of " + s.Proposal + " comes from", Head: []string{"", "energy a year", "money a year", "share"}}
-	share := func(x Saving) string {
-		if s.Whole.Energy == 0 {
-			return "n/a"
+	page := SplitPage{Proposal: s.Proposal, Head: []string{"", "energy a year", "money a year", "share"}}
+	row := func(sum bool, name string, x Saving, figures []audit.Figure) {
+		share := "n/a"
+		if s.Whole.Energy != 0 {
+			share = units.Format(x.Energy/s.Whole.Energy, units.Percent, 3)
 		}
-		return units.Format(x.Energy/s.Whole.Energy, units.Percent, 3)
-	}
-	row := func(sum bool, name string, x Saving) {
-		t.Rows = append(t.Rows, audit.TableRow{Sum: sum, Cells: []string{name, w.energy(x.Energy), w.money(x.Money), share(x)}})
+		page.Rows = append(page.Rows, Row{name, append(figures, audit.Figure{Text: share}), sum})
 	}
 	for _, c := range Classes() {
-		row(false, "of "+l.Circuit+": "+string(c), s.Class[c])
+		x := s.Class[c]
+		row(false, "of "+l.Circuit+": "+string(c), x, []audit.Figure{{Text: w.energy(x.Energy)}, {Text: w.money(x.Money)}})
 	}
-	row(false, "what "+s.Proposal+" adds", s.Architecture)
-	row(true, "saving in all", s.Whole)
-	page := SplitPage{Proposal: s.Proposal, Table: t}
+	adds := "what " + s.Proposal + " adds"
+	row(false, adds, s.Architecture, w.figures(adds, s.Architecture, l.Cured, s.Year, ""))
+	row(true, "saving in all", s.Whole, w.figures("saving in all", s.Whole, l.AsFound, s.Year, ""))
 	page.Text = fmt.Sprintf("Of the %s that %s saves a year, %s can be had without it, by putting %s right. With that done it adds %s.",
 		w.both(s.Whole), s.Proposal, w.both(l.Total()), l.Circuit, w.both(s.Architecture))
 	if s.Whole.Energy <= 0 || l.Total().Energy <= 0 {
 		page.Text = fmt.Sprintf("Against %s with its faults cured, %s saves %s.", l.Circuit, s.Proposal, w.both(s.Architecture))
+	}
+	if s.Payback.None == "" && l.Total().Energy != 0 {
+		page.Text += fmt.Sprintf(" By what it adds alone, its cost comes back in %s.", s.Payback)
 	}
 	if s.Besides.Energy > 0 {
 		page.Text += fmt.Sprintf(" Switched off in the same hours, it would draw %s less besides.", w.both(s.Besides))

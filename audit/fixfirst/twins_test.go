@@ -39,6 +39,7 @@ var twins = map[string]twin{
 	"pre-charge lost":     {of: "accumulator-unloading", set: []string{"ACC1.precharge=40 bar"}, want: []string{"ACC1: pre-charge lost or out of limits"}},
 	"pre-charge too high": {of: "accumulator-unloading", set: []string{"ACC1.precharge=145 bar"}, want: []string{"ACC1: pre-charge lost or out of limits"}},
 	"signal not relieved": {of: "load-sensing-one", replace: [][2]string{{"  - V1.LS - P1.LS\n", ""}, {"- PC1.C - C1.A - RV2.P", "- PC1.C - C1.A - RV2.P - P1.LS"}}, want: []string{"P1: stand-by pressure too high"}},
+	"second stage stuck":  {of: "pressure-compensated-pump", set: []string{"As found/pump_at_rest=unload", "P1.unloaded_pressure=70 bar"}, want: []string{"P1: stand-by pressure too high"}},
 	"setting above need":  {of: "pressure-compensated-pump", set: []string{"P1.set_pressure=230 bar", "RV1.set=275 bar", "RV2.set=280 bar", "RV3.set=280 bar"}, want: []string{"P1: pressure setting above need"}},
 	"charge high":         {of: "closed-circuit-winch", set: []string{"CP1.charge=45 bar"}, want: []string{"CP1: charge pressure or flow too high"}},
 	"charge pump large":   {of: "closed-circuit-winch", set: []string{"CP1.displacement=18 cm3/rev"}, want: []string{"CP1: charge pressure or flow too high"}},

@@ -107,6 +107,7 @@ func (l *layout) fitted(draw func()) {
 func (l *layout) decision(d *audit.Decision, c *audit.Comparison) {
 	l.heading(1, d.Proposal+" in place of "+d.Base, 40)
 	l.verdict(d.Verdict, c.SavedDrawn)
+	l.besides(d.Proposal)
 	if c.Missing != "" {
 		l.stops(c.Base)
 		l.stops(c.Proposal)

@@ -18,11 +18,11 @@ func (l *layout) fixFirst() {
 		}
 		l.para(p.Verdict, l.body())
 		if len(p.Items) > 0 {
-			l.table(fromReport(p.Ladder))
+			l.table(fromReport(p.Ladder()))
 		}
 		for _, s := range p.Splits {
 			l.para(s.Text, l.body())
-			l.table(fromReport(s.Table))
+			l.table(fromReport(s.Table()))
 		}
 		for _, it := range p.Items {
 			l.fixItem(it)
@@ -51,4 +51,15 @@ func (l *layout) fixItem(it fixfirst.Item) {
 		l.lead(side+4.5, "Caution:", it.Caution, st)
 	}
 	l.gap(1.5)
+}
+
+// besides says on the page of a proposal what of its saving could be had without it.
+func (l *layout) besides(proposal string) {
+	for _, p := range l.fix {
+		for _, s := range p.Splits {
+			if s.Proposal == proposal && len(p.Items) > 0 {
+				l.lead(side, "Before it is bought.", s.Text+" See “"+string(FixFirst)+"”.", style{size: 2.6, c: l.pal.Ink})
+			}
+		}
+	}
 }

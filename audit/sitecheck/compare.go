@@ -62,7 +62,11 @@ func (p *Plan) Compare(readings []audit.Reading) Verdict {
 	}
 	if v.Fault != nil && left < sound/2 {
 		v.Share = 1 - left/sound
-		v.Text = fmt.Sprintf("Most likely: %s. It explains %s of what differs. %s", v.Fault.Name, units.Format(v.Share, units.Percent, 2), v.Fault.Do)
+		share := units.Format(v.Share, units.Percent, 2)
+		if v.Share > 0.98 {
+			share = "nearly all"
+		}
+		v.Text = fmt.Sprintf("Most likely: %s. It explains %s of what differs. %s", v.Fault.Name, share, v.Fault.Do)
 		if compared < 3 {
 			v.Text += " That is a guess from few readings: read the other states as well."
 		}

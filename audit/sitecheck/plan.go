@@ -13,11 +13,11 @@ import (
 
 // Plan is what to measure at a circuit, and what the model says of it, sound and with faults.
 type Plan struct {
-	Title, Circuit string
-	System         units.System
-	Points         []Point
-	Sound          Model
-	Faults         []*Fault
+	Circuit string
+	System  units.System
+	Points  []Point
+	Sound   Model
+	Faults  []*Fault
 }
 
 // Options of NewPlan; the zero value is good.
@@ -42,13 +42,13 @@ func NewPlan(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt 
 		return nil, err
 	}
 	p := look.New(s, run, opt.System)
-	out := &Plan{Title: s.File.Title, Circuit: run.Circuit.Name, System: opt.System, Points: points(p), Faults: faults(sound)}
+	out := &Plan{Circuit: run.Circuit.Name, System: opt.System, Points: points(p), Faults: faults(sound)}
 	out.Sound = modelOf(sound, out.Points)
 	if err := solve(ctx, sound.S.File, run.Circuit.Name, out.Points, out.Faults, opt.System, opt.Progress); err != nil {
 		return nil, err
 	}
 	if asDrawn != "" {
-		out.Faults = append(out.Faults, &Fault{Name: "as drawn, with " + asDrawn, Do: "What to do stands under Fix first.", model: []Model{modelOf(p, out.Points)}})
+		out.Faults = append(out.Faults, &Fault{Name: "the machine is as drawn, with " + asDrawn, Do: "What to do stands under Fix first.", model: []Model{modelOf(p, out.Points)}})
 	}
 	opt.Cache.put(key, out)
 	return out, nil

@@ -77,19 +77,6 @@ func (p *Plan) Bad(pt Point) string {
 	return "far from the values beside it: compare drawing and settings"
 }
 
-// Table is the plan as a table.
-func (p *Plan) Table() audit.Table {
-	t := audit.Table{Title: "What to read, and what it should be", Head: []string{"where", "gauge", "rate", "stopped", "idling", "holding", "working", "bad looks like", "caution"}}
-	for _, pt := range p.Points {
-		row := []string{pt.Place + " (" + pt.What + ")", pt.Gauge, pt.Rate}
-		for _, s := range States() {
-			row = append(row, p.Shown(pt, s.Name))
-		}
-		t.Rows = append(t.Rows, audit.TableRow{Cells: append(row, p.Bad(pt), pt.Caution)})
-	}
-	return t
-}
-
 // ReadTable sets the readings beside the model.
 func (p *Plan) ReadTable(v Verdict) audit.Table {
 	t := audit.Table{Title: "What was read", Head: []string{"state", "point", "read", "model", "says"}}
