@@ -273,6 +273,9 @@ func (e *editor) hit(p fyne.Position) (block string, net int, ok bool) {
 }
 
 func (e *editor) redraw() {
+	if e.s.panel != nil {
+		e.s.panel.follow()
+	}
 	e.raster.Refresh()
 	e.hover.place()
 }
