@@ -77,7 +77,7 @@ func (k *checker) suspended(b *Block) {
 		return
 	}
 	if hold == "pump" {
-		k.say(Caution, b, "hold", "a load stands on the pump alone: when power or drive fails it comes down. A pump does not hold a load; keep a load-holding valve at the actuator or a brake, with its own proof")
+		k.say(Caution, b, "hold", "a load stands on the pump alone: when power or drive fails it comes down. A pump does not hold a load; keep a load-holding valve at the actuator or a brake, with its own proof").because(LoadNotHeld, "")
 		return
 	}
 	for _, port := range []string{"A", "B"} {
@@ -85,7 +85,7 @@ func (k *checker) suspended(b *Block) {
 			return
 		}
 	}
-	k.say(Caution, b, "hold", "a load stands on a spool valve without a load-holding valve (pilot-operated check or counterbalance valve) at the actuator: spools leak and hoses burst. Fit one, or say that a brake holds it")
+	k.say(Caution, b, "hold", "a load stands on a spool valve without a load-holding valve (pilot-operated check or counterbalance valve) at the actuator: spools leak and hoses burst. Fit one, or say that a brake holds it").because(LoadNotHeld, "")
 }
 
 // standsUnderLoad reports whether a duty has an axis stand under a load.

@@ -48,6 +48,7 @@ const (
 	RestNotSaid   Cause = "rest not said"  // what pumps do while all stands
 	JoinsNothing  Cause = "joins nothing"  // a junction
 	NoLoadSignal  Cause = "no load signal" // a pump that follows a load pressure
+	LoadNotHeld   Cause = "load not held"  // by a valve or brake of its own; the choice is the user's
 )
 
 // because gives a finding its cause, and the port that is meant: by its name for one of

@@ -11,9 +11,9 @@ import (
 
 // bar holds the buttons above the sheets.
 type bar struct {
-	s                                  *Station
-	add, fit, wide, heat, signs, panel *widgets.Button
-	content                            *fyne.Container
+	s                                      *Station
+	add, fit, wide, signs, circuits, panel *widgets.Button
+	content                                *fyne.Container
 }
 
 func newBar(s *Station) *bar {
@@ -26,15 +26,15 @@ func newBar(s *Station) *bar {
 	b.add = button("sheet.add", func() { s.Act(station.AddBlock) })
 	b.fit = button("sheet.fit", s.fitAll)
 	b.wide = button("sheet.wide", func() { s.setWide(!s.wide) })
-	b.heat = button("sheet.heat", func() { s.setEnergy(!s.ctx.View().Cycle) })
 	b.signs = button("sheet.signs", s.openSigns)
+	b.circuits = button("sheet.circuits", s.openCircuits)
 	b.panel = button("sheet.panel", s.togglePanel)
-	b.content = container.New(flow{}, b.add, b.fit, b.wide, b.heat, b.signs, b.panel)
+	b.content = container.New(flow{}, b.add, b.fit, b.wide, b.signs, b.circuits, b.panel)
 	b.add.SetText("Add block (/)")
 	b.fit.SetText("Fit (F)")
 	b.wide.SetText("Show one sheet (W)")
-	b.heat.SetText("Show heat over the cycle")
 	b.signs.SetText(s.signsText())
+	b.circuits.SetText("Circuits…")
 	b.panel.SetText("Fold properties")
 	return b
 }
@@ -90,7 +90,6 @@ func (b *bar) reload() {
 		}
 	}
 	set(b.wide, pick(b.s.wide, "Show both sheets (W)", "Show one sheet (W)"))
-	set(b.heat, pick(b.s.ctx.View().Cycle, "Show heat at the clock", "Show heat over the cycle"))
 	set(b.signs, b.s.signsText())
 	set(b.panel, pick(b.s.panelOpen(), "Fold properties", "Show properties"))
 }

@@ -16,26 +16,19 @@ import (
 // pickerWidth leaves room for a name [units at scale 1].
 const pickerWidth = 170
 
-// picker chooses the circuit on the second sheet, where there are several, and has the
-// button for what is done with whole circuits.
+// picker chooses the circuit on the second sheet, where there are several.
 type picker struct {
 	s       *Station
 	sel     *widgets.Select
-	choice  *fyne.Container
-	more    *widgets.Button
 	content *fyne.Container
-	pop     *widget.PopUp
 	filling bool
 }
 
 func newPicker(s *Station) *picker {
 	p := &picker{s: s}
 	p.sel = widgets.Name(widgets.NewSelect(nil, p.chosen), "sheet.proposal")
-	p.choice = container.New(widgets.Wide(pickerWidth), p.sel)
-	p.choice.Hide()
-	p.more = widgets.Name(widgets.NewButton("Circuits…", p.open), "sheet.circuits")
-	p.more.Importance = widget.LowImportance
-	p.content = container.NewHBox(p.choice, p.more)
+	p.content = container.New(widgets.Wide(pickerWidth), p.sel)
+	p.content.Hide()
 	return p
 }
 
@@ -46,10 +39,8 @@ func (p *picker) chosen(name string) {
 }
 
 func (p *picker) reload() {
-	file := p.s.ctx.Doc().File()
-	names := file.Besides()
-	show(p.choice, len(names) > 1)
-	show(p.more, len(file.Circuits) > 0)
+	names := p.s.ctx.Doc().File().Besides()
+	show(p.content, len(names) > 1)
 	p.filling = true
 	defer func() { p.filling = false }()
 	p.sel.Options = names
@@ -59,17 +50,22 @@ func (p *picker) reload() {
 	p.sel.Refresh()
 }
 
-// open lists what can be done with whole circuits.
-func (p *picker) open() {
-	w := p.s.ctx.Window()
+// openCircuits lists what can be done with whole circuits.
+func (s *Station) openCircuits() {
+	w := s.ctx.Window()
 	if w == nil {
+		return
+	}
+	if len(s.ctx.Doc().File().Circuits) == 0 {
+		s.ctx.Say("There is no circuit yet; / adds a first block, and File > New has circuits to begin with.")
 		return
 	}
 	box := container.NewVBox()
 	var first fyne.Focusable
+	var pop *widget.PopUp
 	add := func(name, text string, do func()) {
 		b := widgets.Name(widgets.NewButton(text, func() {
-			p.pop.Hide()
+			pop.Hide()
 			do()
 		}), "circuits."+name)
 		b.Alignment, b.Importance = widget.ButtonAlignLeading, widget.LowImportance
@@ -78,21 +74,37 @@ func (p *picker) open() {
 		}
 		box.Add(b)
 	}
-	base, beside := p.s.editors[0].name, p.s.ctx.Beside()
-	if beside != "" {
-		add("rename", "Rename "+beside+"…", func() { p.s.renameCircuit(beside) })
-		add("duplicate", "Duplicate "+beside, func() { p.s.copyCircuit(beside) })
-		add("swap", "Swap sides: "+beside+" is as found", func() { p.s.swapSides(base, beside) })
-		add("delete", "Delete "+beside, func() { p.s.deleteCircuit(beside) })
+	base, beside := s.editors[0].name, s.ctx.Beside()
+	if other := s.editors[1-s.active].name; s.single && other != "" {
+		add("other", "Show the sheet of "+other, s.otherSheet)
 	}
-	add("rename.base", "Rename "+base+"…", func() { p.s.renameCircuit(base) })
-	add("copy", "New proposal, a copy of "+base, p.s.copyAsFound)
-	add("empty", "New proposal, an empty sheet", p.s.emptyProposal)
-	p.pop = widget.NewPopUp(container.New(inset{4}, box), w.Canvas())
-	at := fyne.CurrentApp().Driver().AbsolutePositionForObject(p.more)
-	size := p.pop.MinSize()
-	p.s.popAt(p.pop, at.AddXY(p.more.Size().Width-size.Width, p.more.Size().Height), size)
+	if beside != "" {
+		add("rename", "Rename "+beside+"…", func() { s.renameCircuit(beside) })
+		add("duplicate", "Duplicate "+beside, func() { s.copyCircuit(beside) })
+		add("swap", "Swap sides: "+beside+" is as found", func() { s.swapSides(base, beside) })
+		add("delete", "Delete "+beside, func() { s.deleteCircuit(beside) })
+	}
+	add("rename.base", "Rename "+base+"…", func() { s.renameCircuit(base) })
+	add("copy", "New proposal, a copy of "+base, s.copyAsFound)
+	add("empty", "New proposal, an empty sheet", s.emptyProposal)
+	for _, name := range s.ctx.Doc().File().Besides() {
+		if name != beside {
+			add("pick."+name, "Pick "+name, func() { s.ctx.Pick(name) })
+		}
+	}
+	pop = widget.NewPopUp(container.New(inset{4}, container.NewVScroll(box)), w.Canvas())
+	at := fyne.CurrentApp().Driver().AbsolutePositionForObject(s.bar.circuits)
+	size := box.MinSize().AddWidthHeight(24*widgets.Scale(), 20*widgets.Scale())
+	s.popAt(pop, at.AddXY(0, s.bar.circuits.Size().Height), size)
 	w.Canvas().Focus(first)
+}
+
+// otherSheet shows the other of the two sheets where there is room for one.
+func (s *Station) otherSheet() {
+	s.active = 1 - s.active
+	s.ctx.Select(s.editors[s.active].circuit, "")
+	s.arrange()
+	s.fitAll()
 }
 
 // freeName returns a name for a new circuit, numbered where it is taken.

@@ -44,14 +44,14 @@ func TestSeveralProposals(t *testing.T) {
 	b := newBench(t, press, window)
 	before := string(b.doc.File().Bytes())
 	second := func() string { return b.s.editors[1].name }
-	if b.s.cards[1].picker.choice.Visible() {
+	if b.s.cards[1].picker.content.Visible() {
 		t.Error("a picker for one proposal")
 	}
 	b.circuits("duplicate")
 	if got := b.names(); !slices.Equal(got, []string{"As found", "Pump-controlled", "Pump-controlled 2"}) || second() != "Pump-controlled 2" {
 		t.Fatalf("circuits %v, second sheet %q", got, second())
 	}
-	if p := b.s.cards[1].picker; !p.choice.Visible() || p.sel.Selected != "Pump-controlled 2" {
+	if p := b.s.cards[1].picker; !p.content.Visible() || p.sel.Selected != "Pump-controlled 2" {
 		t.Errorf("picker shows %q", p.sel.Selected)
 	}
 	b.circuits("copy")

@@ -150,6 +150,9 @@ func boxesOf(sh *figures.Sheet) []blockBox {
 }
 
 func (e *editor) redraw() {
+	if e.s.panel != nil {
+		e.s.panel.follow()
+	}
 	e.raster.Refresh()
 	e.hover.place()
 }

@@ -275,9 +275,13 @@ func (s *Station) sheetShown(i int) bool {
 
 const helpText = `Two circuits, one duty, one clock: the circuit as found on the left, a proposal on the right. Move the clock below, and both show that instant.
 
-The tint of a line is its pressure, its width the flow; the amber disc at a block is the power it turns to heat, or over a cycle its energy. Both sheets have the same scales.
+The tint of a line is its pressure, its width the flow; the amber disc at a block is the power it turns to heat, or over a cycle its energy. Both sheets have the same scales. “Results shown” switches each of these signs, and the numbers, off and on.
 
-Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. The values of machines and drives stand in sections; “more” on a section shows those left at their defaults, “more” on a value lets it be dropped, so that its default holds again. Below stand what it does now, what the duty asks of it against what is permitted, its year beside that of the same machine in the other circuit, and pictures; the words on top lead there. With nothing selected the panel has the oil.
+The pointer reads: at a line pressure, flow, power, and velocity where it touches a line whose inner diameter is known; at a valve its position and each way that is open, which is also drawn bold.
+
+Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. The values of machines and drives stand in sections; “more” on a section shows those left at their defaults, “more” on a value lets it be dropped, so that its default holds again. Below stand what it does now, what the duty asks of it against what is permitted, its year beside that of the same machine in the other circuit, and pictures; the words on top lead there. With nothing selected the panel has the oil. Several selected blocks of a kind are edited together: a field shows what they have in common, or “several”, and one change is one step for all. “Compare” sets the values of the same block in the other circuit beside these; ≠ marks what differs, and “take this” takes it over.
+
+Circuits… makes a further proposal, from a copy or empty, picks the one that stands beside the circuit as found, renames, duplicates and deletes it, or swaps the sides. The verdict and all stations follow the one picked; the report has all of them.
 
 Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
 
@@ -287,4 +291,4 @@ Del removes the selected block, and the lines on both sides become one; a click 
 
 Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
 
-The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time.`
+The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time, and blocks are marked. Where there is one sensible cure, a button below the finding does it (M in the list): it draws what is missing or sets what does not fit, with values that are marked as assumed and are yours to check. File > Sheets as PDF prints the circuits as they are seen.`
