@@ -127,6 +127,15 @@ const Format = "barlitre/1"
 //	  heat: {cooler_rate: 0.1 kW/K}
 //	  bends: [{port: P1.P, runs: [[10, 20, 24, 20], [24, 20, 24, 30]]}]
 //
+// In place of points may stand a list of phases, as a stop watch gives them. The tracks
+// are computed from it (see duty.Build): an axis moves by stroke, or at speed, or stands;
+// load_end is where the load goes until the end of the phase; a ramp that is not given is
+// a tenth of the phase, at most 0.1 s:
+//
+//	phases:
+//	- {name: approach, lasts: 2 s, ramp: 0.2 s, ram.stroke: 300 mm, ram.load: 5 kN}
+//	- {name: press, lasts: 3 s, ram.speed: 30 mm/s, ram.load: 20 kN, ram.load_end: 60 kN}
+//
 // In place of points may stand "file: press.csv", a table beside the audit file (or
 // in a folder below it) whose head has the same names with their units: see
 // recording.ReadTable. A recording with names of its own is told by columns, track by
@@ -224,9 +233,10 @@ type File struct {
 
 	Axes     []duty.Axis
 	Duties   []*duty.Duty
-	Sources  []Source     // by duty; the zero Source where the points stand in the audit file
-	Imports  []*Import    // by duty; nil where no recipe says how its recording is read
-	Rates    [][]AxisRate // by duty; how well a recording tells the energy of its axes
+	Sources  []Source       // by duty; the zero Source where the points stand in the audit file
+	Imports  []*Import      // by duty; nil where no recipe says how its recording is read
+	Rates    [][]AxisRate   // by duty; how well a recording tells the energy of its axes
+	Stages   [][]duty.Stage // by duty: the phases that its tracks are computed from; nil where points are given
 	Circuits []CircuitEntry
 	Readings []Reading // of a site check
 

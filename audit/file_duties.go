@@ -143,6 +143,9 @@ func (f *File) setIn(dutyName, key, entry, value string) error {
 	if err != nil {
 		return err
 	}
+	if key == "phases" && f.Stages[i] != nil {
+		return fmt.Errorf("duty %q is computed from its phases, which have their names in the list", dutyName)
+	}
 	entry, value = strings.TrimSpace(entry), strings.TrimSpace(value)
 	d := f.draft()
 	m := child(d.duty(i), key)

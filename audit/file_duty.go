@@ -80,13 +80,19 @@ func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 	d.Sampled = !r.flag(s, f, "instants", true)
 	d.Standstill = r.standstill(s, f["standstill"].value)
 	before := stops(r.found)
-	src, at := r.points(s, d, f, n)
+	src, at := Source{}, map[string]*yaml.Node(nil)
+	if list := f["phases"].value; list != nil && list.Kind == yaml.SequenceNode {
+		at = r.stages(s, d, f)
+	} else {
+		src, at = r.points(s, d, f, n)
+		r.file.Stages = append(r.file.Stages, nil)
+	}
 	if step, ok := r.optional(s, f, "step", units.Time); !ok {
 		d.Step = stepOf(d, src.File != "")
 	} else if d.Step = step.SI; step.SI < 0 {
 		r.bad(s, f["step"].value, "step", "is %s, must not be below 0; 0 s means the rows only", step.Text)
 	}
-	for _, e := range r.entries(s, f["phases"].value, "phases") {
+	for _, e := range r.phaseNames(s, f["phases"].value) {
 		if v, ok := r.value(s.in("phases"), e.value, e.key, units.Time); ok {
 			d.Phases = append(d.Phases, duty.Phase{Name: e.key, From: v.SI})
 		}

@@ -25,6 +25,9 @@ func (f *File) SetPoint(dutyName, track string, row int, quantity string) error 
 	if f.Sources[i].File != "" {
 		return fmt.Errorf("%s: the duty is taken from %s; change it there", label, f.Sources[i].File)
 	}
+	if f.Stages[i] != nil {
+		return fmt.Errorf("%s: the duty is computed from its phases; change them, or turn them into points", label)
+	}
 	points := child(item(child(f.root, "duties"), i), "points")
 	list, unit := trackNode(points, track)
 	if list == nil || list.Kind != yaml.SequenceNode {

@@ -90,6 +90,13 @@ func (d *draft) renamed(ci int, old, id string) ([]splice, error) {
 // renameTracks gives the tracks of a block or axis another name; with keep the old
 // ones stay beside them.
 func (f *File) renameTracks(d *draft, old, id string, keep bool) error {
+	for i, stages := range f.Stages {
+		for k := range stages {
+			if err := d.renameKeys(item(child(d.duty(i), "phases"), k), old, id, keep); err != nil {
+				return err
+			}
+		}
+	}
 	return f.eachTrackList(d, old, func(duty *yaml.Node, key string) error {
 		return d.renameKeys(child(duty, key), old, id, keep)
 	})

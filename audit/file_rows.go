@@ -248,6 +248,9 @@ func (f *File) typedDuty(name string) (int, *draft, error) {
 	if f.Sources[i].File != "" {
 		return i, nil, fmt.Errorf("duty %q is taken from %s; change it there", name, f.Sources[i].File)
 	}
+	if f.Stages[i] != nil {
+		return i, nil, fmt.Errorf("duty %q is computed from its phases; change them, or turn them into points", name)
+	}
 	d := f.draft()
 	points := child(d.duty(i), "points")
 	if points == nil || points.Kind != yaml.MappingNode || len(points.Content) == 0 {

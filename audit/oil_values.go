@@ -26,6 +26,8 @@ func (f *File) OilValues() []OilValue {
 	out := []OilValue{
 		{Key: "temperature", Title: "Oil temperature", Dim: units.Temperature, Value: o.Temperature, Given: o.HasTemperature, Need: true, Text: "at work, in the tank"},
 		{Key: "viscosity_index", Title: "Viscosity index", Dim: units.Count, Value: o.VI, Given: o.HasVI, Text: "ISO 2909: the higher, the less the viscosity changes with temperature"},
+		{Key: "density", Title: "Density", Dim: units.Density, Value: o.Density, Given: o.HasDensity, Text: "at 15 °C; with a viscosity of its own, at the oil temperature"},
+		{Key: "viscosity", Title: "Viscosity at work", Dim: units.DynamicViscosity, Value: o.Viscosity, Given: o.HasViscosity, Text: "dynamic, at the oil temperature; holds there in place of that of the grade"},
 		{Key: "air", Title: "Entrained air", Dim: units.Ratio, Value: o.Air, Given: o.HasAir, Text: "share of volume at atmospheric pressure; makes the oil softer"},
 		{Key: "start_temperature", Title: "Temperature at start", Dim: units.Temperature, Value: o.Start, Given: o.HasStart, Text: "of the oil when the machine starts; without it the start is not checked"},
 	}

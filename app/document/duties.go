@@ -65,3 +65,35 @@ func (d *Document) RemoveRow(duty string, row int) error {
 func (d *Document) SetTable(duty string, heads []string, columns [][]string) error {
 	return d.Edit("Change table of "+duty, func(f *audit.File) error { return f.SetTable(duty, heads, columns) })
 }
+
+// AddStagedDuty adds a duty that is computed from phases, as audit.File.AddStagedDuty does.
+func (d *Document) AddStagedDuty(name string, phases [][]string) error {
+	return d.Edit("Add duty "+name, func(f *audit.File) error { return f.AddStagedDuty(name, phases) })
+}
+
+// SetStage changes what a phase of a duty says; "" takes it out.
+func (d *Document) SetStage(duty string, phase int, key, value string) error {
+	return d.Edit(fmt.Sprintf("Change %s of %s, phase %d", key, duty, phase+1), func(f *audit.File) error {
+		return f.SetStage(duty, phase, key, value)
+	})
+}
+
+// AddStage puts a phase into a duty.
+func (d *Document) AddStage(duty string, phase int, name string) error {
+	return d.Edit("Add phase "+name, func(f *audit.File) error { return f.AddStage(duty, phase, name) })
+}
+
+// RemoveStage takes a phase out.
+func (d *Document) RemoveStage(duty string, phase int) error {
+	return d.Edit(fmt.Sprintf("Remove phase %d of %s", phase+1, duty), func(f *audit.File) error { return f.RemoveStage(duty, phase) })
+}
+
+// StagesToPoints turns the phases of a duty into points.
+func (d *Document) StagesToPoints(duty string) error {
+	return d.Edit("Turn phases of "+duty+" into points", func(f *audit.File) error { return f.StagesToPoints(duty) })
+}
+
+// CloseStrokes scales the way back of an axis until it ends where it began.
+func (d *Document) CloseStrokes(duty, axis string) error {
+	return d.Edit("Close strokes of "+axis, func(f *audit.File) error { return f.CloseStrokes(duty, axis) })
+}

@@ -113,6 +113,9 @@ func (p *player) edit() (what string, err error) {
 	kind := pick(p, circuit.Catalog()).Name
 	axis := pick(p, f.Axes)
 	n := p.r.IntN(1000)
+	if p.r.IntN(20) == 0 {
+		return p.dutyEdit(f)
+	}
 	switch k := p.r.IntN(110); {
 	case len(e.Blocks) > 10 || k < 12:
 		ids := p.ids(&e)
@@ -329,7 +332,7 @@ func TestRandomEdits(t *testing.T) {
 	if string(b.File().Bytes()) != last {
 		t.Error("done again, the text is not the last one")
 	}
-	for _, what := range []string{"delete", "add", "connect", "join", "junction", "disconnect", "rename", "duplicate", "paste", "rotate", "mirror", "move", "copy", "swap", "remove", "phase", "group", "set", "bend", "place", "split", "regroup", "ungroup", "straighten"} {
+	for _, what := range []string{"delete", "add", "connect", "join", "junction", "disconnect", "rename", "duplicate", "paste", "rotate", "mirror", "move", "copy", "swap", "remove", "phase", "group", "set", "bend", "place", "split", "regroup", "ungroup", "straighten", "stage"} {
 		if done[what] < edits/1000 {
 			t.Errorf("%s was done %d times", what, done[what])
 		}

@@ -34,6 +34,7 @@ type Station struct {
 	notes   *fyne.Container
 	panel   *panel
 	pages   *pages
+	phases  *phases
 	ground  *canvas.Rectangle
 	loading bool
 
@@ -209,6 +210,9 @@ func (s *Station) locked() string {
 	if src := s.recorded().File; src != "" {
 		return "read from " + src + "; change it there"
 	}
+	if s.staged() {
+		return "computed from its phases; change those, or turn them into points"
+	}
 	return ""
 }
 
@@ -246,6 +250,7 @@ func (s *Station) Help() string {
 		"With few points the plot shows them as dots: drag one, with Shift in one direction only; a double click in a lane adds one, Delete takes the last one that was touched out.\n\n" +
 		"On the right: name, hours a year and time step of the duty, and whether it repeats. Below, the axes of the machine: name one and press Enter, say what it moves, and tick what the duty gives of it. Of speed or position, load, and command exactly two are given; the balance finds the third. " +
 		"Everything here is one step of undo.\n\n" +
+		"Phases is the other way to a cycle: one row a phase with how long it lasts, the stroke or speed and the load of each axis; the tracks are computed so that strokes are met exactly. A usual duty gives invented numbers to begin with. Turn into points makes a table of it. Where strokes do not close, a button beside the note scales the way back.\n\n" +
 		"Speed above zero extends a cylinder or hoists; a load above zero resists that. A duty that was read from a CSV file is changed in that file.\n\n" +
 		"The notes tell whether the strokes close, below which speed an axis counts as standing, and what was found."
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
@@ -40,6 +41,7 @@ func (s *Station) fillNotes() {
 	for _, a := range s.ctx.Doc().File().Axes {
 		if text := s.closure(d, a); text != "" {
 			s.note("closure."+a.Name, text, widget.MediumImportance, false)
+			s.offerClosing(d, a)
 		}
 	}
 	for _, text := range s.standstill(d) {
@@ -56,6 +58,18 @@ func (s *Station) note(name, text string, importance widget.Importance, bold boo
 		widgets.Name(l, "duty.note."+name)
 	}
 	s.notes.Add(l)
+}
+
+// offerClosing puts a button below the note on strokes that do not close.
+func (s *Station) offerClosing(d *cycle.Duty, a cycle.Axis) {
+	drift, way, _ := audit.StrokeDrift(d, a.Name)
+	if s.recorded().File != "" || d.Track(a.Name, cycle.Speed) == nil || math.Abs(drift) <= 1e-6*way {
+		return
+	}
+	name, axis := d.Name, a.Name
+	s.notes.Add(container.NewHBox(widgets.Name(widgets.NewButton("Scale the way back", func() {
+		s.panel.do(s.ctx.Doc().CloseStrokes(name, axis))
+	}), "duty.close."+axis)))
 }
 
 // findings are those about the duty at hand. The drift of a stroke has its own note.

@@ -32,6 +32,8 @@ func newPages(s *Station) *pages {
 		widgets.Name(widgets.NewButton("Insert row", s.insertRow), "duty.row.insert"),
 		widgets.Name(widgets.NewButton("Delete row", s.deleteRow), "duty.row.delete"))
 	p.add("Points", "duty.page.points", container.NewBorder(nil, s.refusal, nil, nil, s.table), p.points, nil)
+	s.phases = newPhases(s)
+	p.add("Phases", "duty.page.phases", s.phases.body, s.phases.beside, s.phases.fill)
 	bar, bodies, beside := container.NewHBox(), container.NewStack(), container.NewStack()
 	for _, g := range p.list {
 		bar.Add(g.button)

@@ -31,7 +31,7 @@ func newDumper(f *Frame) *dumper {
 	quit := make(chan struct{})
 	d.quit = quit
 	go func() {
-		tick := time.NewTicker(100 * time.Millisecond)
+		tick := time.NewTicker(50 * time.Millisecond)
 		defer tick.Stop()
 		for {
 			select {
