@@ -92,9 +92,26 @@ func (s *Sheet) groups() []sheetGroup {
 			}
 		}
 		box = grown(box, room)
-		out[i] = sheetGroup{g.Label, box, boxAt(box.Min.X, box.Min.Y-noteText*rowHeight, pen.TextWidth(g.Label, noteText, true)+2*notePad, noteText*rowHeight)}
+		out[i] = sheetGroup{g.Label, box, s.groupLabel(g.Label, box)}
 	}
 	return out
+}
+
+// groupLabel puts the label of a group above or below a corner of its box, where it lies
+// on no symbol if there is such a place.
+func (s *Sheet) groupLabel(text string, box drawing.Box) drawing.Box {
+	w, h := pen.TextWidth(text, noteText, true)+2*notePad, noteText*rowHeight
+	var first drawing.Box
+	for i, at := range [4]drawing.Pt{{X: box.Min.X, Y: box.Min.Y - h}, {X: box.Max.X - w, Y: box.Min.Y - h}, {X: box.Min.X, Y: box.Max.Y}, {X: box.Max.X - w, Y: box.Max.Y}} {
+		label := boxAt(at.X, at.Y, w, h)
+		if s.clear(label) {
+			return label
+		}
+		if i == 0 {
+			first = label
+		}
+	}
+	return first
 }
 
 // inner tells whether all of a is in b too; of two that hold the same one counts as inner.
@@ -178,6 +195,16 @@ func (s *Sheet) MarkBox(m SheetMark) (x, y, w, h float64, ok bool) {
 		return 0, 0, 0, 0, false
 	}
 	return b.Min.X, b.Min.Y, b.Max.X - b.Min.X, b.Max.Y - b.Min.Y, true
+}
+
+// GroupLabel is where the label of a group begins, in the circuit's own coordinates [M].
+func (s *Sheet) GroupLabel(group int) (x, y float64, ok bool) {
+	groups := s.groups()
+	if group < 0 || group >= len(groups) {
+		return 0, 0, false
+	}
+	b := groups[group].label
+	return b.Min.X + notePad, (b.Min.Y + b.Max.Y) / 2, true
 }
 
 // MarkAt finds the note at a point of the circuit's own coordinates [M], or the group
