@@ -285,12 +285,16 @@ The tint of a line is its pressure, its width the flow; the amber disc at a bloc
 
 Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. The values of machines and drives stand in sections; “more” on a section shows those left at their defaults, “more” on a value lets it be dropped, so that its default holds again. Below stand what it does now, what the duty asks of it against what is permitted, its year beside that of the same machine in the other circuit, and pictures; the words on top lead there. With nothing selected the panel has the oil.
 
-Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
+Shift adds to the selection, dragging over the ground selects with a box, Ctrl+A selects all, Escape nothing. Tab goes from block to block, then to notes and groups.
 
-Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it) to another port or to a line to connect them; what cannot be joined is refused, and the line below the window says why. The ports of a junction lie at its dot: select it to drag it.
+Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it), or from anywhere on a line, to a port or a line to connect them; the label at the pointer says what a release will do, or why it is refused. By keys: C, choose the port of the selected block, Enter, choose the other port, Enter. The ports of a junction lie at its dot: select it to drag it.
 
-Del removes the selected block, and the lines on both sides become one; a click selects a line, and Del removes it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet. Ctrl+Z takes back each of these.
+Lines find their way by themselves. To lay one by hand, click it and drag a piece of it sideways; S lets it find its way again. A second click chooses one branch of a line. By keys: L goes through the lines, B through the pieces of one, arrow keys move the piece.
 
-Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
+Del removes the selected block, and the lines on both sides become one; it removes the selected line, or the chosen branch of it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet and to another window of the program. Ctrl+Z takes back each of these.
+
+Ctrl+G draws a box with a label around the selected blocks; its label moves all in it. N writes a note at the pointer (Enter begins a line, Ctrl+Enter ends it). F2 or Enter changes either, Del removes it; both are printed with the circuit.
+
+Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules); thin lines show what it is in line with. Escape cancels. The wheel zooms to the pointer, with Shift or Ctrl it pans, as does the middle button, Space with a drag, or the arrow and page keys with nothing selected. F fits, Z shows the selection, W one sheet in full width.
 
 The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time.`
