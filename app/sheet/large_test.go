@@ -170,10 +170,20 @@ func BenchmarkLargeSheet(b *testing.B) {
 	}
 }
 
-func BenchmarkLargeRoute(b *testing.B) {
+// BenchmarkLargeLayout is all of a sheet laid anew, as after a block was moved;
+// BenchmarkLargeValue as after a value was changed.
+func BenchmarkLargeLayout(b *testing.B) {
 	bench := openLarge(b, 200)
 	e := bench.s.editors[0]
 	for b.Loop() {
 		figures.NewSheet(e.drawn)
+	}
+}
+
+func BenchmarkLargeValue(b *testing.B) {
+	bench := openLarge(b, 200)
+	e := bench.s.editors[0]
+	for b.Loop() {
+		e.plain.Next(e.drawn)
 	}
 }
