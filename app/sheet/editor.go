@@ -31,7 +31,9 @@ type editor struct {
 	labels  *audit.CircuitRun // the results
 	moved   *figures.Sheet    // while blocks are dragged, and until the file follows
 	ports   []figures.SheetPort
-	boxes   []blockBox // of sheet, in the circuit's coordinates
+	nets    map[circuit.PortRef]int // lines by the ports that stand on them
+	netsOn  *figures.Sheet          // that nets holds for
+	boxes   []blockBox              // of sheet, in the circuit's coordinates
 	state   *figures.SheetState
 	opt     figures.SheetOptions
 
