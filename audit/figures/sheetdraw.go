@@ -78,8 +78,8 @@ type sheetDrawing struct {
 	scales SheetScales
 	most   float64 // heat of the largest disc
 	now    []netNow
-	tints  []color.NRGBA // of the lines
-	warm   color.NRGBA   // of numbers that belong to a disc
+	tints  []color.NRGBA  // of the lines
+	warm   color.NRGBA    // of numbers that belong to a disc
 	stubOf []map[int]bool // by part: pieces drawn as lines
 }
 
