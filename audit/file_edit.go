@@ -238,23 +238,6 @@ func (f *File) Replace(data []byte) []circuit.Finding {
 	return found
 }
 
-// SetAt moves a block on the sheet of a circuit to at [modules].
-func (f *File) SetAt(circuitName, block string, at [2]float64) error {
-	label := circuitName + "/" + block + ".at"
-	m, _ := f.blockNode(f.circuitIndex(circuitName), block)
-	if m == nil {
-		return fmt.Errorf("%s: there is no block %q in circuit %q", label, block, circuitName)
-	}
-	splices, err := newSource(f.data).putPlace(m, at)
-	if err != nil {
-		return fmt.Errorf("%s: %w", label, err)
-	}
-	return f.change(label, splices, func(g *File) bool {
-		b := g.Circuit(circuitName).Block(block)
-		return b != nil && b.At != nil && *b.At == at
-	})
-}
-
 // putPlace sets the key at of a mapping.
 func (s *source) putPlace(m *yaml.Node, at [2]float64) ([]splice, error) {
 	list := child(m, "at")

@@ -3,7 +3,6 @@ package document
 import (
 	"bytes"
 	"fmt"
-	"slices"
 	"strings"
 
 	"barlitre/audit"
@@ -93,17 +92,6 @@ func (d *Document) Step(target, quantity string) error {
 // key are undone together; see EditMerging.
 func (d *Document) Place(key, name, circuit string, blocks map[string][2]float64, notes map[int][2]float64) error {
 	return d.EditMerging(key, name, func(f *audit.File) error { return f.Place(circuit, blocks, notes) })
-}
-
-// Move puts blocks of a circuit at places on its sheet [modules]. Steps that move
-// the same blocks are undone together.
-func (d *Document) Move(circuit string, at map[string][2]float64) error {
-	var ids []string
-	for id := range at {
-		ids = append(ids, id)
-	}
-	slices.Sort(ids)
-	return d.Place("move "+circuit+"/"+strings.Join(ids, " "), "Move "+these(ids), circuit, at, nil)
 }
 
 // SetPoint changes one value of a duty, as audit.File.SetPoint does.

@@ -70,12 +70,13 @@ func (d *Document) DeleteGroup(circuitName string, group int) error {
 }
 
 // Bend lays a line by hand, as audit.File.Bend does; without runs it is straightened.
+// Steps that bend one line are undone together; see EditMerging.
 func (d *Document) Bend(circuitName, line string, lines []int, runs [][2][2]float64) error {
-	name := "Bend line " + line
+	do := func(f *audit.File) error { return f.Bend(circuitName, lines, runs) }
 	if len(runs) == 0 {
-		name = "Straighten line " + line
+		return d.Edit("Straighten line "+line, do)
 	}
-	return d.EditMerging(fmt.Sprint("bend ", circuitName, lines), name, func(f *audit.File) error { return f.Bend(circuitName, lines, runs) })
+	return d.EditMerging(fmt.Sprint("bend ", circuitName, lines), "Bend line "+line, do)
 }
 
 // AddAxis adds an axis.

@@ -31,7 +31,9 @@ type editor struct {
 	labels  *audit.CircuitRun // the results
 	moved   *figures.Sheet    // while blocks are dragged, and until the file follows
 	ports   []figures.SheetPort
-	boxes   []blockBox // of sheet, in the circuit's coordinates
+	nets    map[circuit.PortRef]int // lines by the ports that stand on them
+	netsOn  *figures.Sheet          // that nets holds for
+	boxes   []blockBox              // of sheet, in the circuit's coordinates
 	state   *figures.SheetState
 	opt     figures.SheetOptions
 
@@ -98,7 +100,7 @@ func newEditor(s *Station, index int) *editor {
 func (e *editor) show(at int, c *circuit.Circuit) {
 	e.cancel()
 	e.hover.hide()
-	kept := e.keep(c)
+	kept, before := e.keep(c), e.plain
 	e.selectLine(-1)
 	e.selectMarks(nil, -1)
 	other := c == nil || e.name != c.Name
@@ -106,7 +108,7 @@ func (e *editor) show(at int, c *circuit.Circuit) {
 	if c == nil {
 		return
 	}
-	e.name, e.plain = c.Name, figures.NewSheet(c)
+	e.name, e.plain = c.Name, before.Next(c)
 	e.sheet = e.plain
 	e.label(e.s.solved(c.Name))
 	e.boxes, e.ports = boxesOf(e.sheet), e.sheet.Ports()

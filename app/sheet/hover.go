@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"strings"
+	"unicode/utf8"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
@@ -23,7 +24,24 @@ type hover struct {
 	lines []*canvas.Text
 }
 
-const hoverLines = 10
+const (
+	hoverLines  = 10
+	hoverWidest = 52 // letters of a row, where words can be broken
+)
+
+// wrapped breaks a text between words into rows of so many letters.
+func wrapped(text string, letters int) []string {
+	var out []string
+	row := ""
+	for _, word := range strings.Fields(text) {
+		if row != "" && utf8.RuneCountInString(row)+1+utf8.RuneCountInString(word) > letters {
+			out, row = append(out, row), word
+			continue
+		}
+		row = strings.TrimSpace(row + " " + word)
+	}
+	return append(out, row)
+}
 
 func (h *hover) build(e *editor) {
 	h.e, h.net = e, -1
@@ -66,7 +84,11 @@ func (h *hover) moveTo(p fyne.Position) {
 
 // tell shows other words at a place.
 func (h *hover) tell(p fyne.Position, text ...string) {
-	h.on, h.block, h.net, h.port, h.told, h.at = true, "", -1, nil, text, p
+	var rows []string
+	for _, t := range text {
+		rows = append(rows, wrapped(t, hoverWidest)...)
+	}
+	h.on, h.block, h.net, h.port, h.told, h.at = true, "", -1, nil, rows, p
 	h.fill()
 	h.place()
 }

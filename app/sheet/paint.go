@@ -37,7 +37,7 @@ func (e *editor) paint(w, h int) image.Image {
 		}
 		if size.Width > 0 && size.Height > 0 {
 			e.pen.Push(0, 0, float64(w)/float64(size.Width))
-			e.draw(localPen{e.pen, e.s.ctx.Local}, sh)
+			e.draw(localPen{e.pen, e.s.ctx.Local}, sh, clear)
 			e.pen.Pop()
 		}
 	}
@@ -61,8 +61,8 @@ func (e *editor) paint(w, h int) image.Image {
 	return e.pen.Image()
 }
 
-// draw draws a sheet in units of the toolkit.
-func (e *editor) draw(p pen.Pen, sh *figures.Sheet) {
+// draw draws a sheet in units of the toolkit, with its legend where that belongs here.
+func (e *editor) draw(p pen.Pen, sh *figures.Sheet, legend bool) {
 	w, h := e.room()
 	if sh == nil {
 		e.drawEmpty(p, w, h)
@@ -72,7 +72,7 @@ func (e *editor) draw(p pen.Pen, sh *figures.Sheet) {
 	p.ClipRect(0, 0, w, h)
 	sh.Draw(p, e.x+ox*e.zoom, e.y+oy*e.zoom, e.zoom, e.state, e.opt)
 	p.Unclip()
-	if e.state != nil && e.legendHeight() > 0 && e.ownLegend() {
+	if legend && e.state != nil && e.legendHeight() > 0 && e.ownLegend() {
 		e.drawLegend(p, w, h)
 	}
 }

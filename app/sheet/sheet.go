@@ -283,12 +283,16 @@ Click a block to see and change its values on the right; type a value with any u
 
 Circuits… makes a further proposal, from a copy or empty, picks the one that stands beside the circuit as found, renames, duplicates and deletes it, or swaps the sides. The verdict and all stations follow the one picked; the report has all of them.
 
-Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
+Shift adds to the selection, dragging over the ground selects with a box, Ctrl+A selects all, Escape nothing. Tab goes from block to block, then to notes and groups.
 
-Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it) to another port or to a line to connect them; what cannot be joined is refused, and the line below the window says why. The ports of a junction lie at its dot: select it to drag it.
+Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it), or from anywhere on a line, to a port or a line to connect them; the label at the pointer says what a release will do, or why it is refused. By keys: C, choose the port of the selected block, Enter, choose the other port, Enter. The ports of a junction lie at its dot: select it to drag it.
 
-Del removes the selected block, and the lines on both sides become one; a click selects a line, and Del removes it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet. Ctrl+Z takes back each of these.
+Lines find their way by themselves. To lay one by hand, click it and drag a piece of it sideways; S lets it find its way again. A second click chooses one branch of a line. By keys: L goes through the lines, B through the pieces of one, arrow keys move the piece.
 
-Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
+Del removes the selected block, and the lines on both sides become one; it removes the selected line, or the chosen branch of it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet and to another window of the program. Ctrl+Z takes back each of these.
+
+Ctrl+G draws a box with a label around the selected blocks; its label moves all in it. N writes a note at the pointer (Enter begins a line, Ctrl+Enter ends it). F2 or Enter changes either, Del removes it; both are printed with the circuit.
+
+Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules); thin lines show what it is in line with. Escape cancels. The wheel zooms to the pointer, with Shift or Ctrl it pans, as does the middle button, Space with a drag, or the arrow and page keys with nothing selected. F fits, Z shows the selection, W one sheet in full width.
 
 The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time, and blocks are marked. Where there is one sensible cure, a button below the finding does it (M in the list): it draws what is missing or sets what does not fit, with values that are marked as assumed and are yours to check. File > Sheets as PDF prints the circuits as they are seen.`

@@ -149,12 +149,16 @@ func (e *editor) portLines(p circuit.PortRef) []string {
 
 // netOf returns the drawn line that a port stands on, −1 for none.
 func (e *editor) netOf(p circuit.PortRef) int {
-	for n := 0; n < e.sheet.Nets(); n++ {
-		for _, q := range e.sheet.Net(n) {
-			if q == p {
-				return n
+	if e.netsOn != e.sheet {
+		e.netsOn, e.nets = e.sheet, map[circuit.PortRef]int{}
+		for n := e.sheet.Nets() - 1; n >= 0; n-- {
+			for _, q := range e.sheet.Net(n) {
+				e.nets[q] = n
 			}
 		}
+	}
+	if n, ok := e.nets[p]; ok {
+		return n
 	}
 	return -1
 }

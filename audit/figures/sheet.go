@@ -22,7 +22,8 @@ type Sheet struct {
 	crossings []drawing.Crossing
 	labels    []sheetLabel
 	notes     []sheetNote
-	veil      *veil       // what is not drawn, nil = all is
+	veil      *veil // what is not drawn, nil = all is
+	laid      *routing
 	seen      *seen       // nil before there are results
 	box       drawing.Box // of everything that may be drawn, without legend
 }
@@ -33,11 +34,16 @@ const sheetMargin = 1.5
 // NewSheet lays a circuit out: blocks without a place are placed, lines are routed,
 // labels find room. It never fails: a block of unknown kind is drawn as a box with its
 // id, ports that do not exist are left out. c must not change afterwards.
-func NewSheet(c *circuit.Circuit) *Sheet {
+func NewSheet(c *circuit.Circuit) *Sheet { return (*Sheet)(nil).Next(c) }
+
+// Next is NewSheet for another state of the circuit of a sheet: where places and lines
+// are as before, as after a change of a value, the lines need not be laid again. The
+// answer is that of NewSheet.
+func (before *Sheet) Next(c *circuit.Circuit) *Sheet {
 	s := &Sheet{circuit: c, parts: partsOf(c), notes: notesOf(c)}
 	s.connect()
 	s.place()
-	s.route()
+	s.route(before)
 	s.placeLabels()
 	s.measure()
 	return s

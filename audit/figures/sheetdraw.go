@@ -79,6 +79,8 @@ type sheetDrawing struct {
 	scales SheetScales
 	most   float64 // heat of the largest disc
 	now    []netNow
+	tints  []color.NRGBA  // of the lines
+	warm   color.NRGBA    // of numbers that belong to a disc
 	stubOf []map[int]bool // by part: pieces drawn as lines
 	bold   float64        // how much wider than usual symbols are drawn; 0 = as usual
 }
@@ -93,6 +95,11 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	d.most = d.scales.Heat
 	if st != nil && st.Energy {
 		d.most = d.scales.Energy
+	}
+	d.warm = d.pal.heatText()
+	d.tints = make([]color.NRGBA, len(d.now))
+	for i, n := range d.now {
+		d.tints[i] = d.tint(n)
 	}
 	p.Push(x, y, scale)
 	p.Push(-s.box.Min.X, -s.box.Min.Y, 1)

@@ -17,8 +17,8 @@ func (d *sheetDrawing) widthOf(q float64) float64 {
 	return math.Max(lineThin, lineWidest*math.Sqrt(math.Min(1, ratio(math.Abs(q), d.scales.Flow))))
 }
 
-// tintOf is the colour of a line: that of its pressure, ink without a state.
-func (d *sheetDrawing) tintOf(n netNow) color.NRGBA {
+// tint is the colour of a line: that of its pressure, ink without a state.
+func (d *sheetDrawing) tint(n netNow) color.NRGBA {
 	if !n.known || d.opt.hides(Tint) {
 		return d.pal.Ink
 	}
@@ -59,7 +59,7 @@ func (d *sheetDrawing) lines() {
 		}
 		if q := st.along(d.now[st.net]); d.flowing(q) {
 			for _, c := range d.chevrons(st, q, d.widthOf(q)) {
-				d.chevron(c, d.tintOf(d.now[st.net]))
+				d.chevron(c, d.tints[st.net])
 			}
 		}
 	}
@@ -87,7 +87,7 @@ func (d *sheetDrawing) stroke(st *stretch) pen.Stroke {
 	if st.pilot {
 		w = lineThin
 	}
-	return dashed(w, d.tintOf(d.now[st.net]), st.style)
+	return dashed(w, d.tints[st.net], st.style)
 }
 
 // dashed is a stroke of a style; the dashes of a wide line are longer.
@@ -159,7 +159,7 @@ func (d *sheetDrawing) drawStubs() {
 			pts[0].X -= 0.2 / out * (pts[1].X - pts[0].X)
 			pts[0].Y -= 0.2 / out * (pts[1].Y - pts[0].Y)
 		}
-		d.p.Polyline(pts, false, color.NRGBA{}, dashed(w, d.tintOf(n), sb.style))
+		d.p.Polyline(pts, false, color.NRGBA{}, dashed(w, d.tints[sb.net], sb.style))
 	}
 }
 
@@ -229,7 +229,7 @@ func (d *sheetDrawing) dots(i int) {
 				w = math.Max(w, d.stroke(st).W)
 			}
 		}
-		d.p.Circle(penPt(at), math.Max(0.42, w/2+0.12), d.tintOf(d.now[i]), pen.Stroke{})
+		d.p.Circle(penPt(at), math.Max(0.42, w/2+0.12), d.tints[i], pen.Stroke{})
 	}
 }
 

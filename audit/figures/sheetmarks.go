@@ -92,9 +92,34 @@ func (s *Sheet) groups() []sheetGroup {
 			}
 		}
 		box = grown(box, room)
-		out[i] = sheetGroup{g.Label, box, boxAt(box.Min.X, box.Min.Y-noteText*rowHeight, pen.TextWidth(g.Label, noteText, true)+2*notePad, noteText*rowHeight)}
+		out[i] = sheetGroup{g.Label, box, s.groupLabel(g.Label, box)}
 	}
 	return out
+}
+
+// groupLabel puts the label of a group above or below a corner of its box, where it lies
+// on as little as may be: symbols count most.
+func (s *Sheet) groupLabel(text string, box drawing.Box) drawing.Box {
+	w, h := pen.TextWidth(text, noteText, true)+2*notePad, noteText*rowHeight
+	best, least := drawing.Box{}, math.Inf(1)
+	for _, at := range [6]drawing.Pt{{X: box.Min.X, Y: box.Min.Y - h}, {X: box.Max.X - w, Y: box.Min.Y - h}, {X: box.Min.X, Y: box.Max.Y},
+		{X: box.Max.X - w, Y: box.Max.Y}, {X: (box.Min.X + box.Max.X - w) / 2, Y: box.Min.Y - h}, {X: (box.Min.X + box.Max.X - w) / 2, Y: box.Max.Y}} {
+		label, cost := boxAt(at.X, at.Y, w, h), 0.0
+		if !s.clear(label) {
+			cost += 10
+		}
+		for _, st := range s.stretches {
+			for i := 1; i < len(st.pts); i++ {
+				if shared(label, segmentBox(st.pts[i-1], st.pts[i])) > 0 {
+					cost++
+				}
+			}
+		}
+		if cost < least {
+			best, least = label, cost
+		}
+	}
+	return best
 }
 
 // inner tells whether all of a is in b too; of two that hold the same one counts as inner.
@@ -134,12 +159,23 @@ func (d *sheetDrawing) groupBoxes() {
 		}
 		w, h := g.box.Max.X-g.box.Min.X, g.box.Max.Y-g.box.Min.Y
 		pen.Rect(d.p, g.box.Min.X, g.box.Min.Y, w, h, fill, line)
-		d.p.Text(pen.Pt{X: g.label.Min.X + notePad, Y: g.label.Min.Y + noteText*pen.Ascent}, g.text, noteText, line.C, pen.Left, true)
 	}
 }
 
-// noteTexts writes the notes, each with a stroke at its left edge.
+// noteTexts writes the labels of groups, and the notes, each with a stroke at its left edge.
 func (d *sheetDrawing) noteTexts() {
+	for i, g := range d.groups() {
+		if d.veil.group(i) {
+			continue
+		}
+		c, b, ground := d.pal.Secondary, g.label, d.pal.Card
+		if d.opt.Groups[i] {
+			c = d.pal.Gain
+		}
+		ground.A = 200
+		pen.Rect(d.p, b.Min.X, b.Min.Y+0.15, b.Max.X-b.Min.X, b.Max.Y-b.Min.Y-0.3, ground, pen.Stroke{})
+		d.p.Text(pen.Pt{X: b.Min.X + notePad, Y: b.Min.Y + noteText*pen.Ascent}, g.text, noteText, c, pen.Left, true)
+	}
 	for i, n := range d.notes {
 		if d.veil.note(i) {
 			continue
@@ -178,6 +214,16 @@ func (s *Sheet) MarkBox(m SheetMark) (x, y, w, h float64, ok bool) {
 		return 0, 0, 0, 0, false
 	}
 	return b.Min.X, b.Min.Y, b.Max.X - b.Min.X, b.Max.Y - b.Min.Y, true
+}
+
+// GroupLabel is where the label of a group begins, in the circuit's own coordinates [M].
+func (s *Sheet) GroupLabel(group int) (x, y float64, ok bool) {
+	groups := s.groups()
+	if group < 0 || group >= len(groups) {
+		return 0, 0, false
+	}
+	b := groups[group].label
+	return b.Min.X + notePad, (b.Min.Y + b.Max.Y) / 2, true
 }
 
 // MarkAt finds the note at a point of the circuit's own coordinates [M], or the group

@@ -104,7 +104,7 @@ func (d *sheetDrawing) heatWords(p *part) []word {
 	if p.copied || ratio(h, d.most) < heatShown || d.opt.hides(Numbers) || d.opt.hides(Discs) {
 		return nil
 	}
-	return []word{{text: heatText(h, d.st.Energy, d.opt.System), size: noteSize, c: d.pal.heatText(), bold: true}}
+	return []word{{text: heatText(h, d.st.Energy, d.opt.System), size: noteSize, c: d.warm, bold: true}}
 }
 
 // heatText writes a power or an energy.
