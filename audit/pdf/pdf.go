@@ -191,10 +191,10 @@ func (l *layout) print(to paper) {
 		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat}, {Request, l.requests},
 		{Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {Method, l.method},
 	} {
-		if slices.Contains(l.without, part.Section) || part.Section == Request && !l.asks() {
+		if slices.Contains(l.without, part.Section) {
 			continue
 		}
-		if part.Section == Request && !l.fresh() {
+		if part.Section == Request && l.asks() && !l.fresh() {
 			l.newPage() // the sheets go to someone else
 		}
 		if part.Section != Decision {
