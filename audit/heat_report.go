@@ -135,7 +135,7 @@ func across(t *Table, runs []*CircuitRun, name string, of func(c *CircuitRun, h 
 func (s *Solution) temperatureTable(p printer, runs []*CircuitRun) Table {
 	t := Table{Title: "How warm the oil gets", Formula: "C·dT/dt = P(T) − UA·(T − Ta) − s·K·(T_in − Ta)", Head: []string{""}}
 	row := func(name string, of func(c *CircuitRun, h *HeatStudy) string) { across(&t, runs, name, of) }
-	row("oil while the machine runs, mean of the week", func(_ *CircuitRun, h *HeatStudy) string { return p.degrees(h.Week.Ran) })
+	row("oil while it runs, mean of the week", func(_ *CircuitRun, h *HeatStudy) string { return p.degrees(h.Week.Ran) })
 	row("viscosity there", func(_ *CircuitRun, h *HeatStudy) string {
 		return p.in(h.Viscosity(h.Week.Ran), units.KinematicViscosity, 3)
 	})
@@ -146,17 +146,17 @@ func (s *Solution) temperatureTable(p printer, runs []*CircuitRun) Table {
 	row("time constant without cooler", func(_ *CircuitRun, h *HeatStudy) string { return Duration(h.Plant.Body.TimeConstant(0)) })
 	row("time constant with it", func(_ *CircuitRun, h *HeatStudy) string { return Duration(h.Plant.Body.TimeConstant(h.takes())) })
 	row("drawn for cooling a year", func(c *CircuitRun, _ *HeatStudy) string { return p.kWh(c.coolingDrawn()) })
-	row("drawn a year with the oil so warm, without cooling", func(_ *CircuitRun, h *HeatStudy) string {
+	row("drawn a year with the oil so warm", func(_ *CircuitRun, h *HeatStudy) string {
 		found, _ := h.AtFound(s.Oil)
 		return p.kWh(found)
 	})
-	row("drawn a year at "+p.degrees(s.Oil)+", without cooling", func(_ *CircuitRun, h *HeatStudy) string {
+	row("drawn a year at "+p.degrees(s.Oil), func(_ *CircuitRun, h *HeatStudy) string {
 		_, stated := h.AtFound(s.Oil)
 		return p.kWh(stated)
 	})
 	longest := runs[0].Warmth.Cycles
 	for i, x := range longest {
-		row("oil within a cycle of "+x.Duty, func(_ *CircuitRun, h *HeatStudy) string {
+		row("within a cycle of "+x.Duty, func(_ *CircuitRun, h *HeatStudy) string {
 			if i >= len(h.Cycles) {
 				return "–"
 			}
@@ -165,7 +165,7 @@ func (s *Solution) temperatureTable(p printer, runs []*CircuitRun) Table {
 	}
 	h := runs[0].Warmth
 	t.Note = fmt.Sprintf("Oil, tank and steel as one heat capacity of %s, walls at %s; each circuit %s, monotone curves between them, missed by at most %s where they led to. "+
-		"The year above is at %s; a circuit that runs warmer or colder draws as the last rows but the cycles say.",
+		"What is drawn a year is without cooling here; the figures of energy and money hold for oil at %s, and a circuit that runs warmer or colder draws as the row above says.",
 		p.in(h.Plant.Body.Capacity(), units.HeatCapacity, 3), p.in(h.Plant.Body.Walls, units.HeatCapacityRate, 3), h.describe(), units.Format(h.Missed, units.Percent, 2), p.degrees(s.Oil))
 	for _, c := range runs {
 		for _, x := range c.Warmth.Cycles {
@@ -194,16 +194,15 @@ func needTable(p printer, runs []*CircuitRun) Table {
 		of := func(what func(n CoolerNeed) string) func(*CircuitRun, *HeatStudy) string {
 			return func(_ *CircuitRun, h *HeatStudy) string { return what(h.Needs[i]) }
 		}
-		across(&t, runs, n.Case+": heat to take", of(func(n CoolerNeed) string { return p.power(n.Heat) }))
+		across(&t, runs, "heat to take: "+n.Case, of(func(n CoolerNeed) string { return p.power(n.Heat) }))
 		across(&t, runs, "capacity, cooling at "+p.degrees(n.Coolant), of(func(n CoolerNeed) string {
 			if n.Fault != "" {
 				return "none does"
 			}
 			return p.cooler(n.Rate)
 		}))
-		across(&t, runs, "oil entering, flow in the mean", of(func(n CoolerNeed) string {
-			return p.degrees(n.Entering) + ", " + p.in(n.Flow, units.Flow, 3)
-		}))
+		across(&t, runs, "oil entering the cooler", of(func(n CoolerNeed) string { return p.degrees(n.Entering) }))
+		across(&t, runs, "oil flow there, mean", of(func(n CoolerNeed) string { return p.in(n.Flow, units.Flow, 3) }))
 	}
 	across(&t, runs, "cooler in the file", func(_ *CircuitRun, h *HeatStudy) string {
 		if k := h.Section.stated(); k > 0 && h.Section.Word("cooler") != noCooler {
@@ -235,7 +234,7 @@ func checkTable(p printer, runs []*CircuitRun) Table {
 	return t
 }
 
-// Cell writes how a case ends: "✓ 48 °C", "▲ 25 min to the alarm".
+// Cell writes how a case ends: "✓ 48 °C", "▲ alarm in 25 min".
 func (c HeatCheck) Cell(system units.System) string {
 	p := printer{system: system}
 	sign := "✓ "
@@ -246,7 +245,7 @@ func (c HeatCheck) Cell(system units.System) string {
 	case c.Fault && c.Time == 0:
 		return sign + "alarm before"
 	case c.Fault && !math.IsNaN(c.Time):
-		return sign + Duration(c.Time) + " to the alarm"
+		return sign + "alarm in " + Duration(c.Time)
 	case c.Fault && math.IsNaN(c.Highest):
 		return c.Text
 	case math.IsNaN(c.Highest) && c.Passed:
@@ -261,9 +260,9 @@ func tankTable(p printer, runs []*CircuitRun) Table {
 	t := Table{Title: "Another tank", Formula: "the march with k times the oil and k^(2/3) times the walls", Head: []string{""}}
 	for i := range runs[0].Warmth.Tanks {
 		volume := p.in(runs[0].Warmth.Tanks[i].Volume, units.Volume, 3)
-		across(&t, runs, volume+": warmest on a hot day; changes over the week by", func(_ *CircuitRun, h *HeatStudy) string {
-			x := h.Tanks[i]
-			return p.degrees(x.Highest) + "; " + p.in(x.Swing, units.TemperatureDifference, 2)
+		across(&t, runs, volume+": warmest, hot day", func(_ *CircuitRun, h *HeatStudy) string { return p.degrees(h.Tanks[i].Highest) })
+		across(&t, runs, volume+": swing over the week", func(_ *CircuitRun, h *HeatStudy) string {
+			return p.in(h.Tanks[i].Swing, units.TemperatureDifference, 2)
 		})
 	}
 	t.Note = "The walls grow with the surface of a tank of the same shape. A bigger tank delays the warmth and cuts its peaks; what it takes away for good is its walls alone."

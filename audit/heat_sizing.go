@@ -20,8 +20,8 @@ type CoolerNeed struct {
 func (h *HeatStudy) needs() ([]CoolerNeed, error) {
 	var out []CoolerNeed
 	for _, c := range []CoolerNeed{
-		{Case: "mix of the duties, ordinary day", Load: Mix, Air: h.Plant.Air.Mean},
-		{Case: "mix of the duties, hottest hour", Load: Mix, Air: h.HotDay + h.Plant.Air.Swing},
+		{Case: "mix, ordinary day", Load: Mix, Air: h.Plant.Air.Mean},
+		{Case: "mix, hottest hour", Load: Mix, Air: h.HotDay + h.Plant.Air.Swing},
 		{Case: "heaviest duty, hottest hour", Load: h.heaviest(), Air: h.HotDay + h.Plant.Air.Swing},
 	} {
 		n, err := h.Plant.Need(c.Load, h.Wanted, c.Air, true)
@@ -79,7 +79,7 @@ type HeatCheck struct {
 // checks works out the cases.
 func (h *HeatStudy) checks() ([]HeatCheck, error) {
 	top := func(c *thermal.Course) float64 { v, _ := c.Highest(); return v }
-	out := []HeatCheck{h.below("ordinary day, mix of the duties", top(h.Week)), h.below("hot day, mix of the duties", top(h.Hot))}
+	out := []HeatCheck{h.below("ordinary day, mix of duties", top(h.Week)), h.below("hot day, mix of duties", top(h.Hot))}
 	for _, x := range []struct {
 		name  string
 		scale float64

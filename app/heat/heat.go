@@ -59,7 +59,7 @@ func (h *Heat) Help() string {
 		"Choose a cooler for the hottest duty, not for the mean of the year. Walls of tank and pipes are not credited there: they are a reserve.\n\n" +
 		"Oil temperature follows the oil of all circuits over the week that repeats itself, over one day, and after a winter start, with the limits drawn across. The circuits are solved " +
 		"at several oil temperatures, so thick and thin oil change every loss. Three sliders try another cooler, air and tank; the curves follow at once, and the audit changes only with Put into the audit.\n\n" +
-		"Below the means stand the oil temperature, the cooler needed for the oil wanted, and the check matrix: hot day and worst duty, a fouled cooler, a fan off, a relief valve that takes all the power, " +
+		"Below the curves stand the oil temperature, the cooler needed for the oil wanted, and the check matrix: hot day and worst duty, a fouled cooler, a fan off, a relief valve that takes all the power, " +
 		"and a winter start. A sign says what is passed. Tank, cooler and air takes what this rests on, for all circuits or for one; an empty field has its default, which stands in grey. " +
 		"What fan and loop pump draw is booked with the energy of every circuit.\n\n" +
 		"Cooler request sheet… writes what a maker of coolers asks for, as PDF or, with the ending .csv, as a table. Lines left blank are for whom their note names."
@@ -93,14 +93,14 @@ func (h *Heat) build() {
 		widgets.Card("Mean heat and the cooler for it", container.NewVBox(h.empty, h.tableOf)),
 		h.hot,
 		widget.NewSeparator(),
-		widgets.Card("Oil temperature, cooler needed, checks", container.NewVBox(h.missing, h.warmth.Table, container.NewHBox(h.request))),
-		widget.NewSeparator(),
 		widgets.Card("Tank, cooler and air", h.section.content),
 	)
 	scroll := container.NewScroll(widgets.Spaced(side))
 	h.table.In(scroll)
-	h.warmth.In(scroll)
-	split := container.NewHSplit(container.NewScroll(widgets.Spaced(container.NewVBox(h.plot.content, widget.NewSeparator(), h.curves.content))), scroll)
+	wide := container.NewScroll(widgets.Spaced(container.NewVBox(h.plot.content, widget.NewSeparator(), h.curves.content, widget.NewSeparator(),
+		widgets.Card("Oil temperature, cooler needed, checks", container.NewVBox(h.missing, container.NewHBox(h.request), h.warmth.Table)))))
+	h.warmth.In(wide)
+	split := container.NewHSplit(wide, scroll)
 	split.Offset = 0.62
 	h.content = split
 }
@@ -169,7 +169,7 @@ func (h *Heat) temperatures(w station.What) {
 	}
 	r := h.ctx.Report()
 	if r == nil || len(r.Warmth) == 0 {
-		h.missing.SetText("Nothing is worked out yet: type the oil in the tank below.")
+		h.missing.SetText("Nothing is worked out yet: type the oil in the tank under Tank, cooler and air.")
 		h.missing.Show()
 		h.warmth.Table.Hide()
 		h.request.Disable()

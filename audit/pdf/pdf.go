@@ -222,10 +222,10 @@ func (l *layout) print(to paper) {
 		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {FixFirst, l.fixFirst}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat},
 		{Request, l.requests}, {Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {SiteCheck, l.siteCheck}, {Method, l.method},
 	} {
-		if slices.Contains(l.without, part.Section) || part.Section == Request && !l.asks() {
+		if slices.Contains(l.without, part.Section) {
 			continue
 		}
-		if (part.Section == Request || part.Section == SiteCheck) && !l.fresh() {
+		if (part.Section == Request && l.asks() || part.Section == SiteCheck) && !l.fresh() {
 			l.newPage() // these go to someone else, or are taken along alone
 		}
 		if part.Section != Decision {

@@ -18,6 +18,14 @@ func (l *layout) asks() bool {
 
 // requests prints the sheet of each circuit, on a page of its own.
 func (l *layout) requests() {
+	if !l.asks() {
+		why := "No circuit was solved, so no cooler is asked for."
+		if len(l.r.Requests) > 0 {
+			why = l.r.Requests[0].Missing
+		}
+		l.para(why, l.body())
+		return
+	}
 	first := true
 	for _, r := range l.r.Requests {
 		if !first {
