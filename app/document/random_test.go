@@ -116,7 +116,7 @@ func (p *player) edit() (what string, err error) {
 	if p.r.IntN(20) == 0 {
 		return p.dutyEdit(f)
 	}
-	switch k := p.r.IntN(110); {
+	switch k := p.r.IntN(112); {
 	case len(e.Blocks) > 10 || k < 12:
 		ids := p.ids(&e)
 		for _, id := range ids {
@@ -207,9 +207,9 @@ func (p *player) edit() (what string, err error) {
 		return "ungroup", p.d.DeleteGroup(name, p.r.IntN(len(e.Groups)+1))
 	case k < 104:
 		return "bend", p.d.Bend(name, "L", []int{line}, p.runs())
-	case k < 105:
-		return "straighten", p.d.Bend(name, "L", []int{line}, nil)
 	case k < 107:
+		return "straighten", p.d.Bend(name, "L", []int{line}, nil)
+	case k < 109:
 		at := map[string][2]float64{}
 		for _, id := range p.ids(&e) {
 			at[id] = p.place()
@@ -219,9 +219,9 @@ func (p *player) edit() (what string, err error) {
 			notes[p.r.IntN(len(e.Notes))] = p.place()
 		}
 		return "place", p.d.Edit("Move", func(f *audit.File) error { return f.Place(name, at, notes) })
-	case k < 108:
+	case k < 110:
 		return "renote", p.d.SetNote(name, p.r.IntN(len(e.Notes)+1), fmt.Sprintf("# %d\n\tor: so", n), p.place())
-	case k < 109:
+	case k < 111:
 		var side []circuit.PortRef
 		if line < len(e.Lines) {
 			side = e.Lines[line].Ports[:1+p.r.IntN(len(e.Lines[line].Ports))]
