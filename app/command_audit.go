@@ -14,7 +14,9 @@ import (
 	"time"
 
 	"barlitre/audit"
+	"barlitre/audit/fixfirst"
 	"barlitre/audit/pdf"
+	"barlitre/audit/sitecheck"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -24,42 +26,33 @@ type auditCall struct {
 	files          []string
 	set            []string
 	json, csv, pdf string
+	request        string
+	sheets         bool
 	system         units.System
 }
 
-func parseAudit(args []string, errs io.Writer) (auditCall, error) {
-	var c auditCall
-	f := flag.NewFlagSet("barlitre audit", flag.ContinueOnError)
-	f.SetOutput(errs)
-	f.Func("set", "set `[CIRCUIT/]BLOCK.PARAM=QUANTITY` before solving; may be repeated", func(s string) error {
-		if !strings.Contains(s, "=") {
-			return fmt.Errorf("%q has no =; write BLOCK.PARAM=QUANTITY, such as RV1.crack=\"150 bar\"", s)
-		}
-		c.set = append(c.set, s)
-		return nil
+func parseAudit(args []string, errs io.Writer) (c auditCall, err error) {
+	c.files, c.set, c.system, err = readCall("audit", args, errs, func(f *flag.FlagSet) {
+		f.StringVar(&c.json, "json", "", "write the results as JSON to `OUT`; - writes nothing but them to standard output")
+		f.StringVar(&c.csv, "csv", "", "write every time step as CSV into the folder `DIR`")
+		f.StringVar(&c.pdf, "pdf", "", "write the report to `OUT`; with several audit files a folder")
+		f.StringVar(&c.request, "request", "", "write the cooler request sheet to `OUT`, a .pdf or a .csv; with several audit files a folder")
+		f.BoolVar(&c.sheets, "sheets", false, "add each circuit to the report on a page of its own, with a title block")
 	})
-	f.StringVar(&c.json, "json", "", "write the results as JSON to `OUT`; - writes nothing but them to standard output")
-	f.StringVar(&c.csv, "csv", "", "write every time step as CSV into the folder `DIR`")
-	f.StringVar(&c.pdf, "pdf", "", "write the report to `OUT`; with several audit files a folder")
-	system := f.String("units", "metric", "units of the text and the report: `metric`, us or si")
-	var err error
-	if c.files, err = parseMixed(f, args); err != nil {
-		return c, err
-	}
-	switch *system {
+	return c, err
+}
+
+// systemNamed returns the units of a name on the command line.
+func systemNamed(name string) (units.System, error) {
+	switch name {
 	case "metric":
-		c.system = units.Metric
+		return units.Metric, nil
 	case "us":
-		c.system = units.US
+		return units.US, nil
 	case "si":
-		c.system = units.SI
-	default:
-		return c, fmt.Errorf("-units %s: use metric, us or si", *system)
+		return units.SI, nil
 	}
-	if len(c.files) == 0 {
-		return c, errors.New("name at least one audit file")
-	}
-	return c, nil
+	return units.Metric, fmt.Errorf("-units %s: use metric, us or si", name)
 }
 
 // auditFiles solves audit files and writes what was asked for.
@@ -108,23 +101,11 @@ func worse(a, b int) int {
 
 // one audits one file.
 func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) (*audit.Result, int) {
-	f, found := audit.Read(path)
-	if f == nil {
-		printFindings(errs, path, found)
-		return nil, exitUnreadable
+	s, code := solveFile(ctx, "audit", path, c.set, audit.Options{CSV: c.csvFiles(path)}, errs)
+	if s == nil {
+		return nil, code
 	}
-	for _, s := range c.set {
-		target, quantity, _ := strings.Cut(s, "=")
-		if err := f.Set(strings.TrimSpace(target), quantity); err != nil {
-			fmt.Fprintf(errs, "barlitre audit: -set %s: %v\n", s, err)
-			return nil, exitUnreadable
-		}
-	}
-	if found := f.Findings(); circuit.AnyStops(found) {
-		printFindings(errs, path, found)
-		return nil, exitUnsolvable
-	}
-	s, err := audit.Solve(ctx, f, audit.Options{CSV: c.csvFiles(path)})
+	ladders, err := fixfirst.All(ctx, s, fixfirst.Options{System: c.system})
 	if err != nil {
 		fmt.Fprintf(errs, "barlitre audit: %s: %v\n", path, err)
 		return nil, exitUnreadable
@@ -132,18 +113,43 @@ func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) 
 	report := s.Report(c.system)
 	if c.json != "-" {
 		printReport(text, report)
+		for _, l := range ladders {
+			printFixFirst(text, l.Page(c.system), false)
+		}
 	}
 	if c.pdf != "" {
 		out := c.pdfPath(path)
+		opt := pdf.Options{System: c.system, Date: time.Now()}
+		for _, l := range ladders {
+			opt.FixFirst = append(opt.FixFirst, l.Page(c.system))
+		}
+		if opt.SiteCheck, err = sitecheck.All(ctx, s, sitecheck.Options{System: c.system, Ladders: ladders}); err != nil {
+			fmt.Fprintf(errs, "barlitre audit: %s: %v\n", path, err)
+			return nil, exitUnreadable
+		}
+		if c.sheets {
+			v := pdf.BusiestView(s)
+			opt.Sheets = &v
+		}
 		if err := writeWhole(out, func(w io.Writer) error {
-			return pdf.Write(w, s, pdf.Options{System: c.system, Date: time.Now()})
+			return pdf.Write(w, s, opt)
 		}); err != nil {
 			fmt.Fprintln(errs, "barlitre audit:", err)
 			return nil, exitUnreadable
 		}
 		fmt.Fprintf(text, "\nReport written to %s\n", out)
 	}
-	return s.Result(), exitOf(s, path, errs)
+	if c.request != "" {
+		if err := c.writeRequest(path, s, text); err != nil {
+			fmt.Fprintln(errs, "barlitre audit:", err)
+			return nil, exitUnreadable
+		}
+	}
+	result := s.Result()
+	for _, l := range ladders {
+		result.FixFirst = append(result.FixFirst, l.Result())
+	}
+	return result, code
 }
 
 // exitOf says by its code how a solution went.
@@ -175,11 +181,29 @@ func baseName(path string) string {
 	return strings.TrimSuffix(filepath.Base(path), filepath.Ext(path))
 }
 
-func (c *auditCall) pdfPath(path string) string {
-	if info, err := os.Stat(c.pdf); c.several() || (err == nil && info.IsDir()) {
-		return filepath.Join(c.pdf, baseName(path)+".pdf")
+func (c *auditCall) pdfPath(path string) string { return c.outPath(c.pdf, path, ".pdf") }
+
+// outPath is where an output of an audit file goes: the name that was asked for, or a file of its own in a folder.
+func (c *auditCall) outPath(asked, path, ending string) string {
+	if info, err := os.Stat(asked); c.several() || (err == nil && info.IsDir()) {
+		return filepath.Join(asked, baseName(path)+ending)
 	}
-	return c.pdf
+	return asked
+}
+
+// writeRequest writes the cooler request sheet, as a page or as a table by the ending of its name.
+func (c *auditCall) writeRequest(path string, s *audit.Solution, text io.Writer) error {
+	out := c.outPath(c.request, path, "-cooler.pdf")
+	err := writeWhole(out, func(w io.Writer) error {
+		if strings.EqualFold(filepath.Ext(out), ".csv") {
+			return audit.WriteRequestCSV(w, s.Requests(c.system))
+		}
+		return pdf.WriteRequest(w, s, pdf.Options{System: c.system, Date: time.Now()})
+	})
+	if err == nil {
+		fmt.Fprintf(text, "\nCooler request sheet written to %s\n", out)
+	}
+	return err
 }
 
 // csvFiles opens the tables of one audit file, in a folder of its own where there are several.

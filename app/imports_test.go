@@ -36,11 +36,16 @@ var arrows = map[string]arrow{
 	"circuit":                    {ours: []string{"circuit/balance", "circuit/duty", "circuit/drawing", "machines", "machines/units"}, outside: []string{"gopkg.in/yaml.v3"}},
 	"samples":                    {ours: []string{"audit", "circuit"}}, // tests only: the samples are data
 	"audit/pen":                  {ours: []string{"assets"}, outside: []string{"github.com/jung-kurt/gofpdf", "golang.org/x/image"}},
-	"audit/figures":              {ours: []string{"audit", "circuit", "audit/pen", "machines/units", "circuit/..."}},
-	"audit/pdf":                  {ours: []string{"audit", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/..."}, outside: []string{"github.com/jung-kurt/gofpdf"}},
-	"audit":                      {ours: []string{"circuit", "circuit/...", "machines", "machines/units"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
+	"audit/figures":              {ours: []string{"audit", "circuit", "audit/pen", "machines/units", "circuit/...", "audit/thermal"}},
+	"audit/pdf":                  {ours: []string{"audit", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/...", "audit/thermal", "audit/fixfirst", "audit/sitecheck"}, outside: []string{"github.com/jung-kurt/gofpdf"}},
+	"audit":                      {ours: []string{"circuit", "circuit/...", "machines", "machines/units", "audit/thermal"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
 	"app/document":               {ours: []string{"audit", "audit/...", "circuit", "circuit/...", "machines", "machines/units", "samples"}},
 	"app":                        {ours: []string{"..."}, outside: []string{"fyne.io/fyne/v2"}},
+	"audit/thermal":              {outside: []string{"gonum.org/v1/gonum"}},
+	"audit/look":                 {ours: []string{"audit", "circuit", "machines/units"}},
+	"audit/fixfirst":             {ours: []string{"audit", "audit/look", "circuit", "machines", "machines/units"}},
+	"audit/sitecheck":            {ours: []string{"audit", "audit/fixfirst", "audit/look", "circuit", "machines/units"}},
+	"audit/cure":                 {ours: []string{"audit", "circuit", "audit/figures", "machines/units"}},
 }
 
 // forbidden are packages and calls that would make a result hang on the moment or the machine.

@@ -22,6 +22,12 @@ func printReport(w io.Writer, r *audit.Report) {
 	for _, c := range r.Circuits {
 		printCircuit(w, c)
 	}
+	if len(r.Warmth) > 0 {
+		heading(w, "Oil temperature and cooler")
+		for _, t := range r.Warmth {
+			auditTable(w, t)
+		}
+	}
 	if len(r.Recordings.Rows) > 0 {
 		heading(w, r.Recordings.Title)
 		for _, row := range r.Recordings.Rows {

@@ -42,6 +42,7 @@ type CircuitRun struct {
 	Heat     *Heat
 	Money    YearCost
 	Services []*Service // of cylinder-switched machines
+	Warmth   *HeatStudy // how warm its oil gets; nil where the file says nothing of tank and cooler
 	// Extrapolated is the share of the energy of a machine at states outside its measured points, by block.
 	Extrapolated map[string]float64
 }
@@ -85,7 +86,10 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 			room <- struct{}{}
 			defer func() { <-room }()
 			j := &job{solution: s, run: c, number: i + 1, progress: p, layouts: laid, csv: opt.CSV}
-			if errs[i] = j.solve(ctx); errs[i] != nil {
+			if errs[i] = j.solve(ctx); errs[i] == nil {
+				errs[i] = j.warm(ctx)
+			}
+			if errs[i] != nil {
 				cancel()
 			}
 		}()
@@ -100,6 +104,7 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		c.Money = s.Tariff.YearCost(c.Year)
 		c.Services = c.services()
 		c.Findings = append(c.Findings, c.remarks()...)
+		c.Findings = append(c.Findings, s.warmthRemarks(c)...)
 		c.Findings = append(c.Findings, s.fuelRemarks(c)...)
 		c.Findings = append(c.Findings, s.extrapolations(c)...)
 		c.Findings = append(c.Findings, c.serviceRemarks()...)

@@ -20,6 +20,9 @@ func (s *Solution) LossCalculation(circuit, duty int, block, kind string, sys un
 	}
 	p := printer{system: sys, currency: s.Tariff.Currency}
 	c := s.Circuits[circuit]
+	if block == coolingBlock && c.Warmth != nil {
+		return s.coolingCalculation(p, c, duty, kind)
+	}
 	law := lawOf(c.Circuit, block, kind)
 	if law == nil {
 		return Calculation{}

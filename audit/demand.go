@@ -50,7 +50,7 @@ func (m *meanMeter) take(x powerAt) {
 	if len(m.head) == 0 {
 		m.from = x.t
 	}
-	x.t, x.p = x.t-m.from, math.Max(x.p, 0)
+	x.t, x.p = x.t-m.from, max(x.p, 0)
 	if len(m.head) > 0 {
 		m.total += (x.t - m.last.t) * (m.last.p + x.p) / 2
 	}

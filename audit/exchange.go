@@ -1,10 +1,6 @@
 package audit
 
-import (
-	"math"
-
-	"barlitre/circuit"
-)
+import "barlitre/circuit"
 
 // Exchange is the energy that machines on one shaft pass to one another over a cycle: what some give to the shaft and
 // others take from it at the same instant,
@@ -39,9 +35,9 @@ func exchanged(s *circuit.Sample, signals []int) float64 {
 	taken, given := 0.0, 0.0
 	for _, k := range signals {
 		p := s.Signals[k]
-		taken, given = taken+math.Max(p, 0), given+math.Max(-p, 0)
+		taken, given = taken+max(p, 0), given+max(-p, 0)
 	}
-	return math.Min(taken, given)
+	return min(taken, given)
 }
 
 // list returns those where something passed, as the mean of the cycles.

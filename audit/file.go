@@ -22,9 +22,9 @@ const Format = "barlitre/1"
 // which keep the text in step: an edit changes the text where it must, reads it again,
 // and takes it if it reads no worse than before; else nothing is changed and the error
 // says why. Values are changed by Set, Put, Clear and SetPoint; a sheet is drawn by
-// AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, SetAt, Rotate, Mirror,
-// AddNote and AddGroup; ImportDuty and SetImport take duties from recordings, TakeIn those that were read; AddCircuit, CopyCircuit and
-// SwapRoles make and exchange sheets; AddAxis, AddDuty, AddTrack, AddRow, SetTable and SetDuty say what the machine does.
+// AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, Place, Rotate, Mirror,
+// Bend, AddNote and AddGroup; ImportDuty and SetImport take duties from recordings, TakeIn those that were read; AddCircuit, CopyCircuit and SwapRoles make and exchange
+// sheets; AddAxis, AddDuty, AddTrack, AddRow, SetTable and SetDuty say what the machine does.
 //
 // # Format
 //
@@ -35,8 +35,10 @@ const Format = "barlitre/1"
 //	format: barlitre/1            needed
 //	title: text
 //	site: {name, customer, author, date, note: text, currency: EUR}
+//	report: {owner, number, revision, approved: text}    for the title block of printed circuits
 //	oil: ...                      needed, see below
 //	air: {temperature: 30 C}      around the tank
+//	heat: {tank_volume: 400 L, cooler: air, cooler_rate: 0.4 kW/K}   optional: tank, cooler, air and shifts
 //	energy: {price: 0.18 EUR/kWh, co2: 0.35 kg/kWh, co2_year: 2024,
 //	         co2_basis: location | market, credit_returned: no,
 //	         fuel_price: 1.6 EUR/L, fuel_co2: 2.66 kg/L,
@@ -78,6 +80,25 @@ const Format = "barlitre/1"
 // Where both a viscosity and a grade are given, the viscosity and the density
 // hold at the working temperature, and the grade says how they change with it.
 //
+// The section heat says what stores and takes the heat, with the keys of HeatKeys; without it no oil temperature is worked out. A
+// circuit may have a heat of its own, which says what is different there:
+//
+//	heat:
+//	  tank_volume: {value: 400 L, origin: name plate}
+//	  air_movement: still | ordinary | forced
+//	  cooler: none | air | water
+//	  cooler_place: return | case drain | flushing | off-line
+//	  cooler_rate: 0.4 kW/K          between entering oil and entering air or water
+//	  cooler_flow: 60 L/min          at which that holds; or, in place of both,
+//	  cooler_points: 20 L/min 0.2 kW/K, 60 L/min 0.4 kW/K
+//	  thermostat_opens: 40 C
+//	  fan_power: 0.55 kW             booked with what the machine draws, of every circuit
+//	  fan: with the machine | by thermostat
+//	  loop_flow: 30 L/min            of an off-line loop
+//	  hot_day: 38 C                  mean air temperature
+//	  shift_hours: 16 h              a day, from shift_start on, shift_days a week
+//	  wanted: 55 C                   oil temperature that the cooler is sized for
+//
 // Duties and circuits are lists:
 //
 //	duties:
@@ -103,6 +124,8 @@ const Format = "barlitre/1"
 //	  lines: [P1.P - V1.P - RV1.P]
 //	  notes: [{text: "label not legible", at: [30, 4]}]
 //	  groups: [{label: Power unit, blocks: [M1, P1, RV1]}]
+//	  heat: {cooler_rate: 0.1 kW/K}
+//	  bends: [{port: P1.P, runs: [[10, 20, 24, 20], [24, 20, 24, 30]]}]
 //
 // In place of points may stand a list of phases, as a stop watch gives them. The tracks
 // are computed from it (see duty.Build): an axis moves by stroke, or at speed, or stands;
@@ -171,8 +194,17 @@ const Format = "barlitre/1"
 // place on the sheet: at in modules, quarter turns, mirrored or not. Its id is
 // made of letters, digits and _. A line joins the ports that it names. A
 // retrofit_cost is for proposals; low and high go together. notes are texts on the
-// sheet, at their upper left corner; groups are labelled boxes around blocks. Neither
-// changes what is computed.
+// sheet, at their upper left corner; groups are labelled boxes around blocks; bends say
+// how the line at a port was laid by hand: pieces, each upright or level, from x, y to
+// x, y. None of them changes what is computed.
+//
+// What was read at the machine in a site check stands last, by state, block and quantity (see Reading):
+//
+//	site_check:
+//	  idling.M1.power: 5.2 kW
+//	  working.P1.pressure: 150 bar
+//
+// It changes nothing that is computed.
 //
 // What Copy puts into the clipboard is an audit file with one circuit, of format, title
 // and circuits alone; Paste takes the first circuit of any audit file.
@@ -180,10 +212,13 @@ type File struct {
 	Path  string // where it was read from; "" when it has no file yet
 	Title string
 	Site  Site
+	Issue Issue
 	Oil   Oil
 
 	Air    circuit.Value // K, around the tank
 	HasAir bool
+
+	Heat HeatSection // of tank, cooler and air, of all circuits
 
 	Price          circuit.Value // money per J
 	HasPrice       bool
@@ -203,6 +238,7 @@ type File struct {
 	Rates    [][]AxisRate   // by duty; how well a recording tells the energy of its axes
 	Stages   [][]duty.Stage // by duty: the phases that its tracks are computed from; nil where points are given
 	Circuits []CircuitEntry
+	Readings []Reading // of a site check
 
 	data   []byte
 	root   *yaml.Node // the top mapping, or nil
@@ -215,6 +251,14 @@ type File struct {
 type Site struct {
 	Name, Customer, Author, Date, Note string
 	Currency                           string // three letters; that of the energy price when not given
+}
+
+// Issue says what a title block needs besides title, author and date: fields of ISO 7200.
+type Issue struct {
+	Owner    string // legal owner of the drawing; that of the site's customer when not given
+	Number   string // identification number
+	Revision string
+	Approved string // who approved it
 }
 
 // Oil is what the file says of the oil.
@@ -250,10 +294,9 @@ type Cost struct {
 // CircuitEntry is a circuit with its part in the audit.
 type CircuitEntry struct {
 	*circuit.Circuit
-	Role   Role
-	Cost   Cost
-	Notes  []SheetNote
-	Groups []SheetGroup
+	Role Role
+	Cost Cost
+	Heat HeatSection // where it differs from that of all circuits
 }
 
 // Open reads a file that an audit file names, by its path relative to the audit

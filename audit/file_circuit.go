@@ -50,7 +50,7 @@ func (r *reader) circuits(n, root *yaml.Node) {
 
 func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 	s := scope{circuit: name, where: fmt.Sprintf("circuit %q", name)}
-	f := r.fields(s, n, "", "name", "role", "note", "pump_at_rest", "retrofit_cost", "blocks", "lines", "notes", "groups")
+	f := r.fields(s, n, "", "name", "role", "note", "pump_at_rest", "retrofit_cost", "blocks", "lines", "notes", "groups", "bends", "heat")
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
 	}
@@ -80,8 +80,10 @@ func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 			c.Lines = append(c.Lines, l)
 		}
 	}
+	c.Heat = r.heat(s, f["heat"].value)
 	c.Notes = r.notes(s, f["notes"].value)
 	c.Groups = r.groups(s, f["groups"].value, &c)
+	c.Bends = r.bends(s, f["bends"].value, &c)
 	return c
 }
 

@@ -12,8 +12,8 @@ import (
 	"barlitre/circuit"
 )
 
-// Copy returns blocks of a circuit as text, with the lines between them and the groups
-// that hold no others. It is a small audit file with one circuit, so that it passes
+// Copy returns blocks of a circuit as text, with the lines between them, the groups that
+// hold no others, and the bends of lines that lead nowhere else. It is a small audit file with one circuit, so that it passes
 // through the clipboard to any sheet.
 func (f *File) Copy(circuitName string, ids ...string) (string, error) {
 	e, err := f.drawn(circuitName)
@@ -32,7 +32,7 @@ func (f *File) Copy(circuitName string, ids ...string) (string, error) {
 		}
 		fmt.Fprintf(&b, "    %s: %s\n", encode(id, true), flowText(child(child(m, "blocks"), id)))
 	}
-	var lines, groups []string
+	var lines, groups, bends []string
 	for _, l := range e.Lines {
 		inner := slices.DeleteFunc(slices.Clone(l.Ports), func(p circuit.PortRef) bool { return !slices.Contains(ids, p.Block) })
 		if len(inner) > 1 {
@@ -44,10 +44,15 @@ func (f *File) Copy(circuitName string, ids ...string) (string, error) {
 			groups = append(groups, groupText(g))
 		}
 	}
+	for _, b := range e.Bends {
+		if e.Within(b.Port, ids) {
+			bends = append(bends, bendText(b))
+		}
+	}
 	for _, list := range []struct {
 		key   string
 		texts []string
-	}{{"lines", lines}, {"groups", groups}} {
+	}{{"lines", lines}, {"groups", groups}, {"bends", bends}} {
 		if len(list.texts) > 0 {
 			fmt.Fprintf(&b, "  %s:\n  - %s\n", list.key, strings.Join(list.texts, "\n  - "))
 		}
@@ -103,7 +108,7 @@ func (f *File) Paste(circuitName, text string, shift [2]float64) (map[string]str
 		}
 	}
 	ids, taken := map[string]string{}, map[string]bool{}
-	var blocks, lines, groups []string
+	var blocks, lines, groups, bends []string
 	for _, b := range p.Blocks {
 		kind := circuit.KindNamed(b.Kind)
 		if kind == nil {
@@ -128,12 +133,16 @@ func (f *File) Paste(circuitName, text string, shift [2]float64) (map[string]str
 		}
 		groups = append(groups, groupText(group))
 	}
+	for _, b := range p.Bends {
+		b.Port.Block = ids[b.Port.Block]
+		bends = append(bends, bendText(b.Mapped(func(at [2]float64) [2]float64 { return [2]float64{at[0] + shift[0], at[1] + shift[1]} })))
+	}
 	d, ci := f.draft(), f.circuitIndex(circuitName)
 	for _, x := range []struct {
 		key    string
 		isList bool
 		texts  []string
-	}{{"blocks", false, blocks}, {"lines", true, lines}, {"groups", true, groups}} {
+	}{{"blocks", false, blocks}, {"lines", true, lines}, {"groups", true, groups}, {"bends", true, bends}} {
 		if len(x.texts) == 0 {
 			continue
 		}
@@ -189,7 +198,7 @@ func renamedPorts(ports []circuit.PortRef, ids map[string]string) []circuit.Port
 	return out
 }
 
-func groupText(g SheetGroup) string {
+func groupText(g circuit.SheetGroup) string {
 	return "{label: " + encode(g.Label, true) + ", blocks: " + idsText(g.Blocks) + "}"
 }
 

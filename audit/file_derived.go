@@ -48,12 +48,16 @@ func (r *reader) derived(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.N
 		v := &derivation{r, of, f, rec, e.value, dim, true}
 		before := len(r.found)
 		key := e.key + ": " + flowText(e.value)
+		r.from.Lock()
 		tr, done := r.from.derived[key]
+		r.from.Unlock()
 		if !done {
 			tr = v.track()
 		}
 		if len(r.found) == before && v.ok {
+			r.from.Lock()
 			r.from.derived[key] = tr
+			r.from.Unlock()
 			r.keep(d, e.key, tr.Values)
 			says := map[string]string{}
 			for key, x := range f {

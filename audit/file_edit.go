@@ -97,6 +97,9 @@ var bandDim = map[string]units.Dim{
 func (f *File) moveBand(src *source, p place, quantity string) ([]splice, error) {
 	n := child(p.mapping, p.key)
 	dim, known := bandDim[p.key]
+	if k := HeatKeyNamed(p.key); p.kind == nil && k != nil {
+		dim, known = k.Dim, true
+	}
 	if p.kind != nil && p.kind.Param(p.key) != nil {
 		dim, known = p.kind.Param(p.key).Dim, true
 	}
@@ -233,23 +236,6 @@ func (f *File) Replace(data []byte) []circuit.Finding {
 		*f = *g
 	}
 	return found
-}
-
-// SetAt moves a block on the sheet of a circuit to at [modules].
-func (f *File) SetAt(circuitName, block string, at [2]float64) error {
-	label := circuitName + "/" + block + ".at"
-	m, _ := f.blockNode(f.circuitIndex(circuitName), block)
-	if m == nil {
-		return fmt.Errorf("%s: there is no block %q in circuit %q", label, block, circuitName)
-	}
-	splices, err := newSource(f.data).putPlace(m, at)
-	if err != nil {
-		return fmt.Errorf("%s: %w", label, err)
-	}
-	return f.change(label, splices, func(g *File) bool {
-		b := g.Circuit(circuitName).Block(block)
-		return b != nil && b.At != nil && *b.At == at
-	})
 }
 
 // putPlace sets the key at of a mapping.

@@ -187,7 +187,11 @@ func TestSetRefuses(t *testing.T) {
 	}
 }
 
-func TestSetAt(t *testing.T) {
+func setAt(f *File, circuit, block string, at [2]float64) error {
+	return f.Place(circuit, map[string][2]float64{block: at}, nil)
+}
+
+func TestPlace(t *testing.T) {
 	for _, c := range []struct {
 		circuit, block string
 		at             [2]float64
@@ -198,19 +202,19 @@ func TestSetAt(t *testing.T) {
 		{"As found", "P1", [2]float64{1, 2}, []string{"# name plate\n", "# name plate\n      at: [1, 2]\n"}},
 	} {
 		f := full(t)
-		if err := f.SetAt(c.circuit, c.block, c.at); err != nil {
+		if err := setAt(f, c.circuit, c.block, c.at); err != nil {
 			t.Error(err)
 		} else if got, want := string(f.Bytes()), swapped(t, c.pairs...); got != want {
 			t.Errorf("%s: got\n%s", c.block, got)
 		}
 	}
 	f := full(t)
-	if err := f.SetAt("As found", "X9", [2]float64{}); err == nil {
+	if err := setAt(f, "As found", "X9", [2]float64{}); err == nil {
 		t.Error("moved a block that is not there")
 	}
 	got := edited(t, block("\n      kind: relief\n      at:\n      - 1 # x\n      - 2"), "RV1.turn", "1")
 	f, _ = Parse([]byte(got), nil, "")
-	if err := f.SetAt("As found", "RV1", [2]float64{10, 20}); err != nil || !strings.Contains(string(f.Bytes()), "at:\n      - 10 # x\n      - 20\n      turn: 1") {
+	if err := setAt(f, "As found", "RV1", [2]float64{10, 20}); err != nil || !strings.Contains(string(f.Bytes()), "at:\n      - 10 # x\n      - 20\n      turn: 1") {
 		t.Errorf("%v\n%s", err, f.Bytes())
 	}
 }

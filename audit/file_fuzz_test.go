@@ -63,7 +63,7 @@ func FuzzParse(f *testing.F) {
 				if b.Kind == "relief" {
 					tryEdit(t, a, func(g *File) error { return g.Set(c.Name+"/"+b.ID+".crack", "123.5 bar") }, 0, 2)
 				}
-				tryEdit(t, a, func(g *File) error { return g.SetAt(c.Name, b.ID, [2]float64{3, 4}) }, 0, 3)
+				tryEdit(t, a, func(g *File) error { return setAt(g, c.Name, b.ID, [2]float64{3, 4}) }, 0, 3)
 			}
 		}
 		if len(a.Duties) > 0 {

@@ -245,6 +245,8 @@ func (r *reader) channel(s scope, rec *logger.Recording, at *yaml.Node, key, col
 		return nil
 	}
 	t := r.from
+	t.Lock()
+	defer t.Unlock()
 	if t.channels[column] == nil {
 		t.channels[column] = c.Values()
 	}

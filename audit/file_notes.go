@@ -5,6 +5,8 @@ import (
 	"fmt"
 	"slices"
 	"strings"
+
+	"barlitre/circuit"
 )
 
 // AddNote writes a note on the sheet of a circuit [modules] and returns its place in Notes.
@@ -17,7 +19,9 @@ func (f *File) AddNote(circuitName, text string, at [2]float64) (int, error) {
 	n := len(e.Notes)
 	return n, f.sheetEdit(e, "note", func(d *draft, ci int) error {
 		return d.add(d.circuit(ci), "notes", true, "{text: "+encode(text, true)+", at: "+placeText(at)+"}")
-	}, func(g *CircuitEntry) bool { return len(g.Notes) == n+1 && g.Notes[n] == SheetNote{text, at} })
+	}, func(g *CircuitEntry) bool {
+		return len(g.Notes) == n+1 && g.Notes[n] == circuit.SheetNote{Text: text, At: at}
+	})
 }
 
 // SetNote changes what a note says and where it stands.
@@ -42,7 +46,7 @@ func (f *File) SetNote(circuitName string, note int, text string, at [2]float64)
 		}
 		more, err := d.src.putPlace(m, at)
 		return d.do(append(splices, more...), err)
-	}, func(g *CircuitEntry) bool { return g.Notes[note] == SheetNote{text, at} })
+	}, func(g *CircuitEntry) bool { return g.Notes[note] == circuit.SheetNote{Text: text, At: at} })
 }
 
 // DeleteNote takes a note off a sheet.
@@ -66,7 +70,7 @@ func (f *File) AddGroup(circuitName, label string, ids ...string) (int, error) {
 	if err != nil {
 		return 0, err
 	}
-	g := SheetGroup{strings.TrimSpace(label), ids}
+	g := circuit.SheetGroup{Label: strings.TrimSpace(label), Blocks: ids}
 	if err := e.mayGroup(g); err != nil {
 		return 0, err
 	}
@@ -85,7 +89,7 @@ func (f *File) SetGroup(circuitName string, group int, label string, ids ...stri
 	if group < 0 || group >= len(e.Groups) {
 		return fmt.Errorf("there is no group %d in circuit %q; it has %d", group+1, e.Name, len(e.Groups))
 	}
-	want := SheetGroup{strings.TrimSpace(label), ids}
+	want := circuit.SheetGroup{Label: strings.TrimSpace(label), Blocks: ids}
 	if err := e.mayGroup(want); err != nil {
 		return err
 	}
@@ -114,7 +118,7 @@ func (f *File) DeleteGroup(circuitName string, group int) error {
 	}, func(c *CircuitEntry) bool { return len(c.Groups) == n-1 })
 }
 
-func (e *CircuitEntry) mayGroup(g SheetGroup) error {
+func (e *CircuitEntry) mayGroup(g circuit.SheetGroup) error {
 	if g.Label == "" || len(g.Blocks) == 0 {
 		return errors.New("a group needs a label and blocks; choose the blocks and write what they are")
 	}

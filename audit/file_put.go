@@ -14,7 +14,7 @@ import (
 // prepared by hand. Besides what Set does it
 //
 //   - sets title, the one text that stands by itself;
-//   - adds oil, air, energy or site where the file lacks it;
+//   - adds oil, air, energy, site or report where the file lacks it;
 //   - adds the retrofit_cost of a circuit with its likely cost, and opens one that is a
 //     bare number; the first low or high makes the likely cost the other end;
 //   - empties a text: site.customer and "" leave no customer.
@@ -45,6 +45,11 @@ func (f *File) added(s *source, target, quantity string) ([]splice, error) {
 	}
 	if i := strings.LastIndex(target, costKey); i >= 0 {
 		return f.addedCost(s, f.circuitNode(f.circuitIndex(target[:i])), target[i+len(costKey):], quantity)
+	}
+	if i := strings.LastIndex(target, "/heat."); i >= 0 && quantity != "" {
+		if m := f.circuitNode(f.circuitIndex(target[:i])); m != nil && isNull(child(m, "heat")) && HeatKeyNamed(target[i+6:]) != nil {
+			return one(s.put(m, "heat", "{"+target[i+6:]+": "+encode(quantity, false)+"}"))
+		}
 	}
 	if section, key, ok := strings.Cut(target, "."); ok && slices.Contains(sections[section], key) && isNull(child(f.root, section)) && quantity != "" {
 		return one(s.put(f.root, section, "{"+key+": "+encode(quantity, slices.Contains(textKeys, key))+"}"))

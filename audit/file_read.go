@@ -19,20 +19,23 @@ func (r *reader) top(root *yaml.Node) bool {
 		return false
 	}
 	var s scope
-	f := r.fields(s, root, "", "format", "title", "site", "oil", "air", "energy", "axes", "duties", "circuits")
+	f := r.fields(s, root, "", "format", "title", "site", "report", "oil", "air", "heat", "energy", "axes", "duties", "circuits", "site_check")
 	r.misspelt = len(r.found) > 0
 	if !r.format(f["format"].value, root) {
 		return false
 	}
 	r.file.Title = r.text(s, f, "title")
 	r.site(f["site"].value)
+	r.issue(f["report"].value)
 	r.energy(f["energy"].value)
 	r.oil(f["oil"].value, root)
 	r.air(f["air"].value)
+	r.file.Heat = r.heat(scope{}, f["heat"].value)
 	r.axisNames(f["axes"].value)
 	r.blockIDs(f["circuits"].value)
 	r.duties(f["duties"].value, root)
 	r.circuits(f["circuits"].value, root)
+	r.readings(f["site_check"].value)
 	return true
 }
 
@@ -68,6 +71,12 @@ func (r *reader) site(n *yaml.Node) {
 	} else if c != "" {
 		r.bad(s, f["currency"].value, "currency", "is %q; write a code of three capital letters, such as EUR", c)
 	}
+}
+
+func (r *reader) issue(n *yaml.Node) {
+	s := scope{where: "report"}
+	f := r.fields(scope{}, n, "report", "owner", "number", "revision", "approved")
+	r.file.Issue = Issue{Owner: r.text(s, f, "owner"), Number: r.text(s, f, "number"), Revision: r.text(s, f, "revision"), Approved: r.text(s, f, "approved")}
 }
 
 func (r *reader) air(n *yaml.Node) {

@@ -6,6 +6,7 @@ import (
 	"io/fs"
 	"path/filepath"
 	"strings"
+	"sync"
 
 	"gopkg.in/yaml.v3"
 
@@ -139,8 +140,9 @@ func (r *reader) track(s scope, d *duty.Duty, tr recordedTrack) {
 
 // recorded is a recording with its columns as a duty has them: an edit reads the audit
 // file again, but neither the recording nor its units. A column is converted where it
-// stands, for a day at 100 Hz is not to be kept twice.
+// stands, for a day at 100 Hz is not to be kept twice; copies of a file share it.
 type recorded struct {
+	sync.Mutex       // of what is converted
 	*recording.Table // nil where it was imported by a recipe
 	rec              *logger.Recording
 	channels         map[string][]float64      // of rec, by column, SI
@@ -157,6 +159,8 @@ type columnIn struct {
 
 // values returns a column in SI; u is the unit that it is in in the file.
 func (t *recorded) values(c recording.Column, u units.Unit) []float64 {
+	t.Lock()
+	defer t.Unlock()
 	was, converted := t.in[c.Name]
 	if !converted {
 		for i, x := range c.Values {
@@ -180,6 +184,8 @@ func (t *recorded) values(c recording.Column, u units.Unit) []float64 {
 
 // asWritten returns the columns in the units of the file.
 func (t *recorded) asWritten() []machines.Column {
+	t.Lock()
+	defer t.Unlock()
 	out := pointColumns(t.Table)
 	for i, c := range out {
 		if u, converted := t.in[c.Name]; converted && (u.Factor != 1 || u.Offset != 0) {

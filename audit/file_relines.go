@@ -104,8 +104,10 @@ func (d *draft) setLines(index int, want map[int][]circuit.PortRef, added ...[]c
 			texts = append(texts, encode(portsText(ports), true))
 		}
 	}
-	if len(texts) == 0 {
-		return nil
+	if len(texts) > 0 {
+		if err := d.add(d.circuit(index), "lines", true, texts...); err != nil {
+			return err
+		}
 	}
-	return d.add(d.circuit(index), "lines", true, texts...)
+	return d.keepBends(index, want, added)
 }

@@ -83,7 +83,8 @@ func (d *draft) renamed(ci int, old, id string) ([]splice, error) {
 			out = append(out, sp)
 		}
 	}
-	return out, nil
+	more, err := d.renamedBends(m, old, id)
+	return append(out, more...), err
 }
 
 // renameTracks gives the tracks of a block or axis another name; with keep the old

@@ -6,27 +6,17 @@ import (
 	"strings"
 
 	"gopkg.in/yaml.v3"
+
+	"barlitre/circuit"
 )
 
-// SheetNote is a text on the sheet of a circuit, at its upper left corner [modules].
-type SheetNote struct {
-	Text string
-	At   [2]float64
-}
-
-// SheetGroup is a label on a box around blocks of a circuit.
-type SheetGroup struct {
-	Label  string
-	Blocks []string
-}
-
 // notes reads what is written on a sheet.
-func (r *reader) notes(s scope, n *yaml.Node) []SheetNote {
-	var out []SheetNote
+func (r *reader) notes(s scope, n *yaml.Node) []circuit.SheetNote {
+	var out []circuit.SheetNote
 	for i, item := range r.items(s, n, "notes", "notes: [{text: ..., at: [12, 30]}]") {
 		in := s.in(fmt.Sprintf("note %d", i+1))
 		f := r.fields(in, item, "", "text", "at")
-		note := SheetNote{Text: r.text(in, f, "text")}
+		note := circuit.SheetNote{Text: r.text(in, f, "text")}
 		if strings.TrimSpace(note.Text) == "" {
 			r.bad(in, item, "text", "is missing; write what the note says, or take it out")
 		}
@@ -41,12 +31,12 @@ func (r *reader) notes(s scope, n *yaml.Node) []SheetNote {
 }
 
 // groups reads the boxes around blocks of a circuit.
-func (r *reader) groups(s scope, n *yaml.Node, c *CircuitEntry) []SheetGroup {
-	var out []SheetGroup
+func (r *reader) groups(s scope, n *yaml.Node, c *CircuitEntry) []circuit.SheetGroup {
+	var out []circuit.SheetGroup
 	for i, item := range r.items(s, n, "groups", "groups: [{label: ..., blocks: [M1, P1]}]") {
 		in := s.in(fmt.Sprintf("group %d", i+1))
 		f := r.fields(in, item, "", "label", "blocks")
-		g := SheetGroup{Label: r.text(in, f, "label")}
+		g := circuit.SheetGroup{Label: r.text(in, f, "label")}
 		if strings.TrimSpace(g.Label) == "" {
 			r.bad(in, item, "label", "is missing; write what the box holds")
 		}

@@ -205,7 +205,7 @@ func TestNotesAndGroups(t *testing.T) {
 	f := sheetFile(t)
 	_, err := f.AddNote("As found", "ask: is it 160 bar?\n{maybe}", [2]float64{3, 4})
 	becomes(t, f, err, "blocks: [F1]}\n", "blocks: [F1]}\n  notes:\n  - {text: \"ask: is it 160 bar?\\n{maybe}\", at: [3, 4]}\n")
-	if n := f.Circuit("As found").Notes; len(n) != 1 || n[0] != (SheetNote{"ask: is it 160 bar?\n{maybe}", [2]float64{3, 4}}) {
+	if n := f.Circuit("As found").Notes; len(n) != 1 || n[0] != (circuit.SheetNote{Text: "ask: is it 160 bar?\n{maybe}", At: [2]float64{3, 4}}) {
 		t.Errorf("got %v", n)
 	}
 	becomes(t, f, f.SetNote("As found", 0, "asked", [2]float64{3, 5}), "blocks: [F1]}\n", "blocks: [F1]}\n  notes:\n  - {text: \"asked\", at: [3, 5]}\n")

@@ -11,7 +11,7 @@ import (
 )
 
 // textKeys are the keys that take a free text.
-var textKeys = []string{"note", "name", "customer", "author", "date", "currency"}
+var textKeys = []string{"note", "name", "customer", "author", "date", "currency", "owner", "number", "revision", "approved"}
 
 // attributes are what may stand beside the value of a quantity.
 var attributes = []string{"origin", "low", "high", "note"}
@@ -19,8 +19,10 @@ var attributes = []string{"origin", "low", "high", "note"}
 // sections are the parts of a file that Set reaches besides circuits, with their keys.
 var sections = map[string][]string{
 	"site":   {"name", "customer", "author", "date", "note", "currency"},
+	"report": {"owner", "number", "revision", "approved"},
 	"oil":    {"grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100", "specific_heat", "bulk_modulus", "air", "start_temperature"},
 	"air":    {"temperature"},
+	"heat":   heatKeyNames(),
 	"energy": {"price", "co2", "co2_year", "co2_basis", "credit_returned", "fuel_price", "fuel_co2", "fuel_density", "fuel_heating_value"},
 }
 
@@ -126,6 +128,8 @@ func (f *File) circuitPlace(target, name string, words []string) ([]place, error
 		return nil, fmt.Errorf("%s: %w", target, errLayout)
 	case len(words) == 1 && slices.Contains(circuitKeys, words[0]):
 		return []place{p}, nil
+	case (len(words) == 2 || len(words) == 3) && words[0] == "heat":
+		return f.heatPlace(target, p.mapping, words)
 	case len(words) == 2 && words[0] == "retrofit_cost":
 		cost := child(p.mapping, "retrofit_cost")
 		if cost == nil || cost.Kind != yaml.MappingNode {
@@ -137,7 +141,7 @@ func (f *File) circuitPlace(target, name string, words []string) ([]place, error
 		strings.Join(circuitKeys, ", "))
 }
 
-// sectionPlace finds a key of site, oil, air or energy.
+// sectionPlace finds a key of site, report, oil, air or energy.
 func (f *File) sectionPlace(target string, words []string) ([]place, error) {
 	known, ok := sections[words[0]]
 	switch {
@@ -151,8 +155,29 @@ func (f *File) sectionPlace(target string, words []string) ([]place, error) {
 		return nil, fmt.Errorf("%s: %s is not in the file; add it there first, as in %s: {%s: ...}", target, words[0], words[0], words[1])
 	}
 	if len(words) == 3 {
-		err := p.beside(target, words[2], words[0] != "site")
+		err := p.beside(target, words[2], words[0] != "site" && words[0] != "report" && !isHeatWord(words))
 		return []place{p}, err
+	}
+	return []place{p}, nil
+}
+
+// isHeatWord reports whether a target names a word of the section heat, which has no low and high.
+func isHeatWord(words []string) bool {
+	k := HeatKeyNamed(words[1])
+	return words[0] == "heat" && k != nil && (len(k.Choices) > 0 || k.IsText)
+}
+
+// heatPlace finds a key of the heat of one circuit.
+func (f *File) heatPlace(target string, m *yaml.Node, words []string) ([]place, error) {
+	p := place{mapping: child(m, "heat"), key: words[1], label: target}
+	k := HeatKeyNamed(words[1])
+	switch {
+	case k == nil:
+		return nil, fmt.Errorf("%s: heat has no %q%s", target, words[1], guess(words[1], heatKeyNames()))
+	case isNull(p.mapping):
+		return nil, fmt.Errorf("%s: the circuit has no heat of its own; add it there first, as in heat: {%s: ...}", target, words[1])
+	case len(words) == 3:
+		return []place{p}, p.beside(target, words[2], len(k.Choices) == 0 && !k.IsText)
 	}
 	return []place{p}, nil
 }

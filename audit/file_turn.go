@@ -14,36 +14,36 @@ import (
 // the one in their middle, so that four turns lead back and all stay on the grid.
 func (f *File) Rotate(circuitName string, quarters int, ids ...string) error {
 	q := ((quarters % 4) + 4) % 4
-	return f.pose(circuitName, ids, func(b *circuit.Block, p centre) {
-		b.Turn = (b.Turn + q) % 4
-		if b.At != nil && len(ids) > 1 {
-			x, y := b.At[0]-p.pivot[0], b.At[1]-p.pivot[1]
-			for i := 0; i < q; i++ {
-				x, y = -y, x
-			}
-			b.At = &[2]float64{p.pivot[0] + x, p.pivot[1] + y}
+	return f.pose(circuitName, ids, func(b *circuit.Block) { b.Turn = (b.Turn + q) % 4 }, func(at [2]float64, c centre) [2]float64 {
+		if len(ids) == 1 {
+			return at
 		}
+		x, y := at[0]-c.pivot[0], at[1]-c.pivot[1]
+		for i := 0; i < q; i++ {
+			x, y = -y, x
+		}
+		return [2]float64{c.pivot[0] + x, c.pivot[1] + y}
 	})
 }
 
 // Mirror flips blocks of a circuit left to right, several of them about the middle of
 // their places.
 func (f *File) Mirror(circuitName string, ids ...string) error {
-	return f.pose(circuitName, ids, func(b *circuit.Block, p centre) {
+	return f.pose(circuitName, ids, func(b *circuit.Block) {
 		// A block is mirrored before it is turned, so its turn goes the other way.
 		b.Turn, b.Mirror = (4-b.Turn)%4, !b.Mirror
-		if b.At != nil && len(ids) > 1 {
-			b.At = &[2]float64{2*p.middle[0] - b.At[0], b.At[1]}
+	}, func(at [2]float64, c centre) [2]float64 {
+		if len(ids) == 1 {
+			return at
 		}
+		return [2]float64{2*c.middle[0] - at[0], at[1]}
 	})
 }
 
 // MoveBy shifts blocks of a circuit that have a place [modules].
 func (f *File) MoveBy(circuitName string, by [2]float64, ids ...string) error {
-	return f.pose(circuitName, ids, func(b *circuit.Block, _ centre) {
-		if b.At != nil {
-			b.At = &[2]float64{b.At[0] + by[0], b.At[1] + by[1]}
-		}
+	return f.pose(circuitName, ids, func(*circuit.Block) {}, func(at [2]float64, _ centre) [2]float64 {
+		return [2]float64{at[0] + by[0], at[1] + by[1]}
 	})
 }
 
@@ -73,8 +73,9 @@ func centreOf(blocks []*circuit.Block) centre {
 	return c
 }
 
-// pose changes how blocks lie on the sheet; change gets copies of them.
-func (f *File) pose(circuitName string, ids []string, change func(b *circuit.Block, p centre)) error {
+// pose changes how blocks lie on the sheet; turn gets copies of them, and place maps where
+// they stand, and the bends of lines that lead to no other blocks.
+func (f *File) pose(circuitName string, ids []string, turn func(b *circuit.Block), place func(at [2]float64, c centre) [2]float64) error {
 	e, err := f.drawn(circuitName)
 	if err != nil {
 		return err
@@ -97,15 +98,21 @@ func (f *File) pose(circuitName string, ids []string, change func(b *circuit.Blo
 	d, ci := f.draft(), f.circuitIndex(circuitName)
 	var splices []splice
 	for id, b := range blocks {
-		change(b, p)
+		if turn(b); b.At != nil {
+			at := place(*b.At, p)
+			b.At = &at
+		}
 		more, err := d.posed(ci, e.Block(id), b)
 		if err != nil {
 			return fmt.Errorf("%s: %w", id, err)
 		}
 		splices = append(splices, more...)
 	}
+	more, err := d.movedBends(ci, func(b circuit.SheetBend) (circuit.SheetBend, bool) {
+		return b.Mapped(func(at [2]float64) [2]float64 { return place(at, p) }), e.Within(b.Port, ids)
+	})
 	what := strings.Join(ids, ", ")
-	if err := d.do(splices, nil); err != nil {
+	if err := d.do(append(splices, more...), err); err != nil {
 		return fmt.Errorf("%s: %w", what, err)
 	}
 	return f.take(what, d, func(g *File) bool {

@@ -32,15 +32,22 @@ var groups = []group{
 	{"lines, filters and check valves", []string{"line", "filter", "cooler", "flow_point", "check", "pilot_check", "shuttle", "shuttle_flow", "junction"}},
 	{"cylinder friction", []string{"cylinder", "double_rod", "plunger"}},
 	{"accumulators", []string{"accumulator"}},
+	{coolingGroup, nil},
 }
 
-const otherGroup = "other blocks"
+const (
+	otherGroup   = "other blocks"
+	coolingGroup = "cooler fan and pumps"
+)
 
 // groupOf names the group that a loss belongs to. The relief valve inside a charge
 // pump counts as a relief valve.
 func groupOf(c *circuit.Circuit, l LossRow) string {
 	if strings.Contains(l.Kind, "relief") || strings.Contains(l.Kind, "relieving") {
 		return reliefGroup
+	}
+	if l.Block == coolingBlock {
+		return coolingGroup
 	}
 	if b := c.Block(l.Block); b != nil {
 		for _, g := range groups {

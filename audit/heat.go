@@ -48,10 +48,6 @@ func CoolerRate(heat, oil, air float64) (float64, error) {
 // transfer coefficient h [W/(m²·K)] and dT [K] between oil and air: P = h·A·dT.
 func WallHeat(h, area, dT float64) float64 { return h * area * dT }
 
-// WallCoefficients are heat transfer coefficients of tank walls [W/(m²·K)] in still,
-// ordinary and forced air. Trade literature on tanks; rough by a factor of 1.5.
-var WallCoefficients = [3]float64{6, 12, 24}
-
 // leastHeat is the mean heat [W] below which it is what rounding leaves of nothing, as in
 // a circuit that is switched off.
 const leastHeat = 1e-6

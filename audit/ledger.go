@@ -244,7 +244,7 @@ func (l *Ledger) powers(s *circuit.Sample) (net, mains, gap float64, err error) 
 	}
 	mains = net - fuel
 	l.now[base+itemSeconds] = 1
-	l.now[base+itemSupplyIn], l.now[base+itemReturned], l.now[base+itemFuel] = math.Max(mains, 0)+fuel, math.Max(-mains, 0), fuel
+	l.now[base+itemSupplyIn], l.now[base+itemReturned], l.now[base+itemFuel] = max(mains, 0)+fuel, max(-mains, 0), fuel
 	work := l.now[base+itemWork:]
 	clear(work)
 	for k, i := range l.works {
@@ -252,7 +252,7 @@ func (l *Ledger) powers(s *circuit.Sample) (net, mains, gap float64, err error) 
 	}
 	for a := range l.axes {
 		p := work[2*a]
-		work[2*a], work[2*a+1] = math.Max(p, 0), math.Min(p, 0)
+		work[2*a], work[2*a+1] = max(p, 0), min(p, 0)
 	}
 	return net, mains, math.Abs(gap), nil
 }

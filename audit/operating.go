@@ -26,6 +26,7 @@ type operated struct {
 	block             string
 	w, e, p, s, shaft int // signals
 	last              Operating
+	lastKey           stateKey // of last
 	power             float64
 	states            map[stateKey]*Operating
 	key               stateKey   // of the state booked last
@@ -79,11 +80,12 @@ func (o *operation) Sample(s *circuit.Sample) error {
 		}
 		now := Operating{W: get(m.w), E: get(m.e), DP: get(m.p) - get(m.s)}
 		power := math.Abs(get(m.shaft))
+		key := keyOf(&now)
 		if half > 0 {
-			m.book(m.last, m.power, half)
-			m.book(now, power, half)
+			m.book(m.last, m.lastKey, m.power, half)
+			m.book(now, key, power, half)
 		}
-		m.last, m.power = now, power
+		m.last, m.lastKey, m.power = now, key, power
 	}
 	return nil
 }
@@ -111,9 +113,13 @@ func (o *operation) Join(part circuit.Receiver) error {
 	return nil
 }
 
-// book adds to the states alike; their mean is weighted by energy.
-func (m *operated) book(x Operating, power, dt float64) {
-	key := stateKey{int(math.Round(x.W / alikeSpeed)), int(math.Round(x.E / alikeSetting)), int(math.Round(x.DP / alikePressure))}
+// keyOf is the key of a state.
+func keyOf(x *Operating) stateKey {
+	return stateKey{int(math.Round(x.W / alikeSpeed)), int(math.Round(x.E / alikeSetting)), int(math.Round(x.DP / alikePressure))}
+}
+
+// book adds to the states alike, those of a key; their mean is weighted by energy.
+func (m *operated) book(x Operating, key stateKey, power, dt float64) {
 	x.Seconds, x.Energy = dt, power*dt
 	m.add(key, x)
 }

@@ -18,6 +18,8 @@ type Report struct {
 	Exclusions  []string
 	Method      []Law
 	Cautions    []CautionText
+	Warmth      []Table           // how warm the oil gets, the cooler needed, checks; none where the file says nothing of tank and cooler
+	Requests    []Request         // for a cooler, a circuit each
 	Findings    []circuit.Finding // of all circuits, those that stop first; cautions are in Cautions
 }
 
@@ -85,6 +87,8 @@ type Table struct {
 	Head  []string
 	Rows  []TableRow
 	Note  string
+	// Formula is what its numbers follow from, where one holds for all; "" else.
+	Formula string
 }
 
 // TableRow is a row; Sum marks one that adds up those above.
@@ -100,6 +104,7 @@ func (s *Solution) Report(system units.System) *Report {
 	p := printer{system: system, currency: s.Tariff.Currency}
 	r := &Report{Title: s.File.Title, Site: s.File.Site, System: system,
 		Assumptions: s.assumptions(p), Exclusions: exclusions(), Method: s.method(), Cautions: s.Cautions(), Recordings: s.recordingsTable(p)}
+	r.Warmth, r.Requests = s.heatTables(p), s.Requests(system)
 	for _, c := range s.Comparisons {
 		r.Decisions = append(r.Decisions, s.decision(p, c))
 	}

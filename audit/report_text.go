@@ -5,6 +5,7 @@ import (
 	"slices"
 	"strings"
 
+	"barlitre/audit/thermal"
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
@@ -130,7 +131,7 @@ func (s *Solution) coolerAssumption(p printer) string {
 	if _, err := CoolerRate(0, s.Oil, s.Air); err != nil {
 		return "Cooler: " + err.Error() + "."
 	}
-	h := WallCoefficients[1]
+	h := thermal.OrdinaryAir
 	return fmt.Sprintf("Coolers are named for oil entering at %s and air at %s, by the mean heat of a cycle. Walls of tank and pipes are not credited: "+
 		"a square metre of free tank wall would take about %s (at %s W/(m²·K), trade literature).",
 		p.degrees(s.Oil), p.degrees(s.Air), p.power(WallHeat(h, 1, s.Oil-s.Air)), units.Number(h, 2))
@@ -139,12 +140,12 @@ func (s *Solution) coolerAssumption(p printer) string {
 // exclusions lists what is outside the audit.
 func exclusions() []string {
 	return []string{
-		"Fans and water of the cooler, pumps that only filter or circulate, control cabinets and their cooling.",
+		"Fans and water of the cooler where the section heat does not say what they draw, pumps that only filter or circulate, control cabinets and their cooling.",
 		"Demand charges, reactive energy, taxes and rebates: the 15-minute mean is shown so that they can be worked out with the tariff at hand.",
 		"Interest, price changes, upkeep, spare parts, downtime of the change: the payback is a simple one.",
 		"Moved masses, gears and stores that are not drawn.",
 		"Pressure shocks, decompression, oscillation and speed of control.",
-		"Warm-up, cold starts and changes of oil temperature over the day.",
+		"Warm-up, cold starts and changes of oil temperature over the day, in the figures of energy and money; how warm the oil gets is told beside them.",
 		"Wear and faults that are not typed as values of a block.",
 		"Everything listed under limits of use.",
 	}
@@ -165,6 +166,8 @@ func (s *Solution) method() []Law {
 		{"15-minute mean", "max over t of E(t, t + 15 min) / 15 min, of power drawn from the mains", "exact for powers linear between time steps; length common practice"},
 		{"heat", "P = Σ losses with sink oil / time", "all hydraulic losses and friction of pumps, motors and cylinders warm the oil"},
 		{"cooler", "K = P / (T_oil − T_air)", "difference of entering temperatures, common practice of cooler makers"},
+		{"oil temperature", "C·dT/dt = P(T) − UA·(T − Ta) − Q", "one or two heat capacities; P from the duty solved at several oil temperatures, monotone cubic curves between them (Fritsch and Butland); marched by Dormand and Prince's method"},
+		{"cooler over time", "Q = s·K(q)·(T_in − Ta), K(q) = ρc·q·(1 − exp(−UA/(ρc·q)))", "effectiveness and number of transfer units, capacity ratio 0; oil enters at the tank's temperature and what it took up on its way, H/(ρc·q)"},
 		{"money", "K = E_mains · price + E_fuel · price of fuel; n = cost / saving", "arithmetic"},
 		{"starts", "E = (1 + ks)·J·(ω² − ω0²)/2 a start, at the instant of the start", "see electric motor; of an engine the fuel of some idling"},
 	}

@@ -46,6 +46,8 @@ type Result struct {
 	Comparisons []ComparisonResult `json:"comparisons"`
 	Recordings  []RecordingResult  `json:"recordings,omitempty"` // that duties were taken from
 	LimitsOfUse []string           `json:"limits_of_use"`
+	// FixFirst is what package fixfirst finds in the circuits as found, where it was asked.
+	FixFirst []any `json:"fix_first,omitempty"`
 }
 
 // CircuitResult is one circuit of a result file.

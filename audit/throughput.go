@@ -92,8 +92,8 @@ func (p *passing) at(s *circuit.Sample) (now [passingFigures]float64) {
 		one = loss - one
 	}
 	other := one - loss
-	now[0] = math.Max(one, 0) + math.Max(-other, 0)
-	now[1] = math.Max(-one, 0) + math.Max(other, 0)
+	now[0] = max(one, 0) + max(-other, 0)
+	now[1] = max(-one, 0) + max(other, 0)
 	if now[0] > 0 {
 		now[2] = 1
 	}

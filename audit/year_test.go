@@ -4,6 +4,7 @@ import (
 	"math"
 	"testing"
 
+	"barlitre/audit/thermal"
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
@@ -72,7 +73,7 @@ func TestPublishedCoolerHeat(t *testing.T) {
 // A 200 L tank with 1.7 m² of wall, 50 K above the air, h = 12 W/(m²·K): 1.02 kW. Trade
 // article on tanks; the arithmetic is what is checked.
 func TestTankWalls(t *testing.T) {
-	wants(t, "wall", WallHeat(WallCoefficients[1], 1.7, 50), 1020, 1e-12)
+	wants(t, "wall", WallHeat(thermal.OrdinaryAir, 1.7, 50), 1020, 1e-12)
 }
 
 func TestCoolerRateRefuses(t *testing.T) {

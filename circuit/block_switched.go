@@ -4,7 +4,7 @@ import "barlitre/machines/units"
 
 const (
 	switchedGeneral = "chosen so that about 90 % are left at a fifth of the flow, as published machines of the principle have it; from memory, no table"
-	switchedRange   = "assumed: no measurement of an open source is known to us; ask its maker"
+	switchedRange   = "no measurement of an open source is known to us; ask its maker"
 )
 
 // switchedKind is one service of a cylinder-switched machine, in four quadrants.

@@ -290,38 +290,22 @@ func (m *valveModel) eval(e *eval) {
 	u := m.opening(e)
 	for i, q := range m.q {
 		br := &m.branch[i]
-		if q < 0 {
-			continue
-		}
-		if !br.on {
-			e.d(q, q, 1)
+		switch {
+		case q < 0:
+		case !br.on:
 			e.add(q, e.val(q))
-			continue
-		}
-		v := e.branch(br.a, br.b, q)
-		if m.dir == 0 {
+			e.d(q, q, 1)
+		case m.dir == 0:
+			v := e.branch(br.a, br.b, q)
 			r, dr := br.t.at(v)
 			e.drop(br.a, br.b, q, r, dr)
-			continue
-		}
-		// Off the centre the row is a flow, q = u·√…, so that closing the valve is no singular case.
-		full, slope := br.t.flow(e.val(br.a) - e.val(br.b))
-		u, of := u, noSlot // the unknown that the opening is
-		switch {
 		case i == 1 && m.out.open >= 0:
-			u, of = e.val(m.out.open), m.out.open
+			m.evalEdge(e, br, q, e.val(m.out.open), m.out.open)
 		case m.now:
-			of = m.open
+			m.evalEdge(e, br, q, u, m.open)
+		default:
+			m.evalEdge(e, br, q, u, noSlot)
 		}
-		e.add(q, v-u*full)
-		if e.plain() {
-			continue
-		}
-		slope = br.t.chord(e.val(br.a)-e.val(br.b), full, v/u, slope)
-		e.d(q, q, 1)
-		e.d(q, br.a, -u*slope)
-		e.d(q, br.b, u*slope)
-		e.d(q, of, -full)
 	}
 	if m.open >= 0 {
 		if m.now { // more opening, more speed
@@ -343,6 +327,23 @@ func (m *valveModel) eval(e *eval) {
 			e.d(m.ls, load, -1)
 		}
 	}
+}
+
+// evalEdge adds an edge with an opening u, which is the unknown of if there is one. Off the
+// centre its row is a flow, q = u·√…, so that closing the valve is no singular case.
+func (m *valveModel) evalEdge(e *eval, br *branch, q slot, u float64, of slot) {
+	v := e.branch(br.a, br.b, q)
+	dp := e.val(br.a) - e.val(br.b)
+	full, slope := br.t.flow(dp)
+	e.add(q, v-u*full)
+	if e.plain() {
+		return
+	}
+	slope = u * br.t.chord(dp, full, v/u, slope)
+	e.d(q, q, 1)
+	e.d(q, br.a, -slope)
+	e.d(q, br.b, slope)
+	e.d(q, of, -full)
 }
 
 // loadPort is the port that is fed.

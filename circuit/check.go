@@ -46,8 +46,8 @@ func Check(c *Circuit, axes []duty.Axis, duties []*duty.Duty) []Finding {
 
 func rank(l Level) int { return strings.Index("stops warns caution note", string(l)) }
 
-// say adds a finding about a block.
-func (k *checker) say(level Level, b *Block, param, format string, args ...any) {
+// say adds a finding about a block, and returns it until the next is added.
+func (k *checker) say(level Level, b *Block, param, format string, args ...any) *Finding {
 	f := Finding{Level: level, Circuit: k.c.Name, Parameter: param, Text: fmt.Sprintf(format, args...), Line: k.c.Line}
 	if b != nil {
 		f.Block, f.Line = b.ID, b.Line
@@ -59,6 +59,7 @@ func (k *checker) say(level Level, b *Block, param, format string, args ...any) 
 		f.Text = b.ID + ": " + f.Text
 	}
 	k.found = append(k.found, f)
+	return &k.found[len(k.found)-1]
 }
 
 // blocks checks each block for itself.
@@ -116,11 +117,16 @@ func (k *checker) parameters(b *Block, kind *Kind) {
 			if p.Type == Choice {
 				want += ": " + join(p.Choices, "or")
 			}
-			k.say(Stops, b, p.Key, "%s is missing (%s)", p.Key, want)
+			k.say(Stops, b, p.Key, "%s is missing (%s)", p.Key, want).because(MissingValue, "")
 		}
 	}
 	if kind.check != nil {
-		kind.check(kind, b, func(level Level, param, format string, args ...any) { k.say(level, b, param, format, args...) })
+		kind.check(kind, b, func(level Level, param, format string, args ...any) {
+			f := k.say(level, b, param, format, args...)
+			if p := kind.Param(param); p != nil && level == Stops && b.lacks(p.Key) {
+				f.because(MissingValue, "")
+			}
+		})
 	}
 }
 
@@ -150,6 +156,7 @@ func (k *checker) lines() {
 		}
 		if len(l.Ports) == 1 {
 			bad(l.Ports[0].Block, "the line at %s leads nowhere; name the port at its other end", l.Ports[0])
+			k.found[len(k.found)-1].because(OpenLine, l.Ports[0].Port)
 		}
 		for _, p := range l.Ports {
 			b := k.c.Block(p.Block)
@@ -188,10 +195,10 @@ func (k *checker) rest() {
 	case Keep, Stop:
 	case Unload:
 		if !k.canUnload() {
-			k.say(Stops, nil, "pump_at_rest", "circuit %q unloads at rest, but nothing in it can: give a relief valve a vented pressure, a pump an unloaded_pressure, a valve a tandem or open centre, or use open-centre sections", k.c.Name)
+			k.say(Stops, nil, "pump_at_rest", "circuit %q unloads at rest, but nothing in it can: give a relief valve a vented pressure, a pump an unloaded_pressure, a valve a tandem or open centre, or use open-centre sections", k.c.Name).because(RestNotSaid, "")
 		}
 	case "":
-		k.say(Stops, nil, "pump_at_rest", "circuit %q does not say what its pumps do while everything stands: pump_at_rest: keep, unload or stop", k.c.Name)
+		k.say(Stops, nil, "pump_at_rest", "circuit %q does not say what its pumps do while everything stands: pump_at_rest: keep, unload or stop", k.c.Name).because(RestNotSaid, "")
 	default:
 		k.say(Stops, nil, "pump_at_rest", "pump_at_rest is %q, must be keep, unload or stop", k.c.PumpAtRest)
 	}

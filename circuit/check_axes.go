@@ -109,10 +109,10 @@ func (k *checker) joined(a duty.Axis, movers []*Block, bad func(at []*Block, for
 			return
 		}
 		if hold := KindNamed(b.Kind).WordOf(b, "hold"); hold != first {
-			k.say(Stops, b, "hold", "it moves axis %s together with %s, which is held by the %s; give both the same hold", a.Name, movers[0].ID, first)
+			k.say(Stops, b, "hold", "it moves axis %s together with %s, which is held by the %s; give both the same hold", a.Name, movers[0].ID, first).because(HeldOtherwise, "")
 		}
 		if _, given := b.Values["start"]; given {
-			k.say(Stops, b, "start", "%s move axis %s together, and their ends of stroke are not followed; take start out, stroke alone still checks the way of the duty", join(ids(movers), "and"), a.Name)
+			k.say(Stops, b, "start", "%s move axis %s together, and their ends of stroke are not followed; take start out, stroke alone still checks the way of the duty", join(ids(movers), "and"), a.Name).because(NeedsNoValue, "")
 		}
 	}
 }
@@ -121,13 +121,13 @@ func (k *checker) joined(a duty.Axis, movers []*Block, bad func(at []*Block, for
 func (k *checker) holding(act, control *Block, direct []*Block) {
 	hold := KindNamed(act.Kind).WordOf(act, "hold")
 	if hold == "pump" && isValve(control) {
-		k.say(Stops, act, "hold", "it is held by the pump, but %s throttles it; use hold: valve or brake", control.ID)
+		k.say(Stops, act, "hold", "it is held by the pump, but %s throttles it; use hold: valve or brake", control.ID).because(HeldByValve, "")
 	}
 	if hold == "pump" && k.c.PumpAtRest == Stop {
 		k.say(Stops, act, "hold", "it is held by the pump, but pump_at_rest: stop switches the pump off; use keep, or hold: valve or brake")
 	}
 	if hold == "pump" && len(direct) > 0 {
-		k.say(Stops, act, "hold", "it is held by the pump, but %s closes at rest; use hold: valve", direct[0].ID)
+		k.say(Stops, act, "hold", "it is held by the pump, but %s closes at rest; use hold: valve", direct[0].ID).because(HeldByValve, "")
 	}
 }
 

@@ -44,7 +44,7 @@ func (k *checker) reference(b *Block) {
 			return
 		}
 	}
-	k.say(Stops, b, "reference_speed", "no motor or engine turns its shaft; give the reference_speed that its power limit or set flow belongs to")
+	k.say(Stops, b, "reference_speed", "no motor or engine turns its shaft; give the reference_speed that its power limit or set flow belongs to").because(MissingValue, "")
 }
 
 // terminals checks what a motor's terminals hang on.
@@ -54,15 +54,15 @@ func (k *checker) terminals(b *Block) {
 	_, idles := b.Values["idle_speed"]
 	switch {
 	case converter && slips(b):
-		k.say(Stops, b, "slip", "a converter feeds it, which makes up for slip; drop one of the two")
+		k.say(Stops, b, "slip", "a converter feeds it, which makes up for slip; drop one of the two").because(NeedsNoValue, "")
 	case converter:
 	case isServo(b):
-		k.say(Stops, b, "type", "a permanent_magnet motor cannot start on the mains; join its terminals E to a converter")
+		k.say(Stops, b, "type", "a permanent_magnet motor cannot start on the mains; join its terminals E to a converter").because(NoConverter, "E")
 	case idles:
-		k.say(Stops, b, "idle_speed", "only a converter can turn it slower; join its terminals E to one, or drop idle_speed")
+		k.say(Stops, b, "idle_speed", "only a converter can turn it slower; join its terminals E to one, or drop idle_speed").because(NoConverter, "E")
 	case commandsTorque(b):
-		k.say(Stops, b, "commands", "only a converter can command its torque; join its terminals E to one")
+		k.say(Stops, b, "commands", "only a converter can command its torque; join its terminals E to one").because(NoConverter, "E")
 	case varies(b):
-		k.say(Note, b, "", "its speed varies but no converter feeds it; the losses of the converter are not counted, and what comes back goes to the mains")
+		k.say(Note, b, "", "its speed varies but no converter feeds it; the losses of the converter are not counted, and what comes back goes to the mains").because(NoConverter, "E")
 	}
 }

@@ -17,11 +17,11 @@ func (k *checker) ports() {
 			if n != nil && len(n.ports) > 1 {
 				joined++
 			} else if !p.Optional {
-				k.say(Stops, b, "", "port %s (%s) is not connected", p.Name, p.Text)
+				k.say(Stops, b, "", "port %s (%s) is not connected", p.Name, p.Text).because(OpenPort, p.Name)
 			}
 		}
 		if isPump(b) && kind.WordOf(b, "control") == "load_sensing" && k.of[PortRef{b.ID, "LS"}] == nil {
-			k.say(Stops, b, "control", "a load-sensing pump needs a pilot line at its port LS")
+			k.say(Stops, b, "control", "a load-sensing pump needs a pilot line at its port LS").because(NoLoadSignal, "LS")
 		}
 		if b.Kind == kindPump && kind.WordOf(b, "control") == "negative_flow" && k.of[PortRef{b.ID, "LS"}] == nil {
 			k.say(Stops, b, "control", "a negative_flow pump needs a pilot line at its port LS, from the line before an orifice in the return of the open centre")
@@ -30,7 +30,7 @@ func (k *checker) ports() {
 			k.say(Stops, b, "pilot", "with pilot: external it needs a pilot line at its port X, with pilot: inlet none")
 		}
 		if b.Kind == kindJunction && joined == 0 {
-			k.say(Warns, b, "", "the junction joins nothing")
+			k.say(Warns, b, "", "the junction joins nothing").because(JoinsNothing, "")
 		}
 	}
 }
@@ -147,7 +147,7 @@ func (k *checker) train(n *net) {
 		k.say(Stops, axes[0], "axis", "it drives axis %s, but %s gives its shaft a speed; take one of them off the shaft", axes[0].Word("axis"), prime[0])
 	}
 	if len(prime)+len(movers) == 0 {
-		k.say(Stops, k.c.Block(loads[0]), "", "nothing drives the shaft of %s; connect an electric motor or an engine to it", join(loads, "and"))
+		k.say(Stops, k.c.Block(loads[0]), "", "nothing drives the shaft of %s; connect an electric motor or an engine to it", join(loads, "and")).because(NoDrive, shaftOf(nets, loads[0]))
 	}
 }
 
@@ -200,6 +200,30 @@ func (k *checker) islands() {
 			list = append(list[:6:6], "…")
 		}
 		b := k.c.Block(r.ports[0].Block)
-		k.say(Stops, b, "", "the oil at %s has no way to a tank or to a low-pressure source; its pressure is not determined. Connect a tank, or a charge pump through check valves", strings.Join(list, ", "))
+		var back PortRef
+		for _, n := range k.nets { // a port that leads to a tank by trade is named first
+			if n.typ != Oil || find(n) != r || back.Port != "" {
+				continue
+			}
+			for _, p := range n.ports {
+				if back.Port == "" && k.c.ReturnsAt(p) {
+					back = p
+				}
+			}
+		}
+		k.say(Stops, b, "", "the oil at %s has no way to a tank or to a low-pressure source; its pressure is not determined. Connect a tank, or a charge pump through check valves", strings.Join(list, ", ")).because(NoTank, "")
+		k.found[len(k.found)-1].Port = back
 	}
+}
+
+// shaftOf names the port with which a block sits on one of some shafts.
+func shaftOf(nets []*net, block string) string {
+	for _, n := range nets {
+		for _, p := range n.ports {
+			if p.Block == block {
+				return p.Port
+			}
+		}
+	}
+	return ""
 }

@@ -14,6 +14,7 @@ func (k *checker) safety() {
 			if n := k.of[PortRef{b.ID, "S"}]; n != nil && n.tank == "" && KindNamed(b.Kind).WordOf(b, "both_directions") == "yes" {
 				k.relieved(b, "S", "its other side")
 			}
+			k.relievedAbove(b)
 		case b.Kind == kindCylinder:
 			k.relieved(b, "A", "the bore side")
 			k.relieved(b, "B", "the rod side")
@@ -39,7 +40,7 @@ func (k *checker) relieved(b *Block, port, name string) {
 	if n.src != "" {
 		return
 	}
-	k.say(Caution, b, "", "%s (%s.%s) can be closed off from every relief valve: pressure there has no limit. Put a relief valve on it; who may set it and how is for the maker of the machine and the local rules", name, b.ID, port)
+	k.say(Caution, b, "", "%s (%s.%s) can be closed off from every relief valve: pressure there has no limit. Put a relief valve on it; who may set it and how is for the maker of the machine and the local rules", name, b.ID, port).because(NoRelief, port)
 }
 
 // free lists the ways through parts that cannot close in their free direction.
@@ -76,7 +77,7 @@ func (k *checker) suspended(b *Block) {
 		return
 	}
 	if hold == "pump" {
-		k.say(Caution, b, "hold", "a load stands on the pump alone: when power or drive fails it comes down. A pump does not hold a load; keep a load-holding valve at the actuator or a brake, with its own proof")
+		k.say(Caution, b, "hold", "a load stands on the pump alone: when power or drive fails it comes down. A pump does not hold a load; keep a load-holding valve at the actuator or a brake, with its own proof").because(LoadNotHeld, "")
 		return
 	}
 	for _, port := range []string{"A", "B"} {
@@ -84,7 +85,7 @@ func (k *checker) suspended(b *Block) {
 			return
 		}
 	}
-	k.say(Caution, b, "hold", "a load stands on a spool valve without a load-holding valve (pilot-operated check or counterbalance valve) at the actuator: spools leak and hoses burst. Fit one, or say that a brake holds it")
+	k.say(Caution, b, "hold", "a load stands on a spool valve without a load-holding valve (pilot-operated check or counterbalance valve) at the actuator: spools leak and hoses burst. Fit one, or say that a brake holds it").because(LoadNotHeld, "")
 }
 
 // standsUnderLoad reports whether a duty has an axis stand under a load.

@@ -87,9 +87,9 @@ func (k *stroke) clear(shift float64) bool {
 
 // meet takes a point in time: the way gone to it, and that foretold from the speed before.
 func (k *stroke) meet(travel, foretold, margin float64) {
-	k.from = math.Min(k.from, math.Min(travel, foretold))
-	k.to = math.Max(k.to, math.Max(travel, foretold))
-	k.margin = math.Max(k.margin, margin)
+	k.from = min(k.from, min(travel, foretold))
+	k.to = max(k.to, max(travel, foretold))
+	k.margin = max(k.margin, margin)
 }
 
 // cutsOf cuts where every axis moves, if there is such a step near: there all
@@ -133,7 +133,7 @@ func waysOf(s *duty.Series, cuts []int) [][]float64 {
 			}
 			v := a.SpeedAt(j)
 			if j > 0 {
-				way += math.Max(0, s.T[j]-s.T[j-1]) * (last + v) / 2
+				way += max(0, s.T[j]-s.T[j-1]) * (last + v) / 2
 			}
 			last = v
 		}

@@ -9,6 +9,9 @@ type Circuit struct {
 	PumpAtRest AtRest
 	Blocks     []Block
 	Lines      []Line
+	Notes      []SheetNote // notes, groups and bends change how the sheet looks, not what is computed
+	Groups     []SheetGroup
+	Bends      []SheetBend
 	Line       int // where it stands in the file
 }
 

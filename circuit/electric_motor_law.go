@@ -46,9 +46,9 @@ func (l *motorLaw) loss(T, w float64) float64 {
 
 // motorElectric is the electric side of a motor: current and power factor.
 type motorElectric struct {
-	U, cos             int // parameters
-	sigI, sigPF        int // signals, −1 where not known
-	voltage, powFactor float64
+	U, cos            int     // parameters
+	sigI, sigPF       int     // signals, −1 where not known
+	voltage, reactive float64 // V; var at rated load
 }
 
 func (k *compiler) motorElectric(b *Block, converter bool) motorElectric {
@@ -63,7 +63,10 @@ func (k *compiler) motorElectric(b *Block, converter bool) motorElectric {
 	return m
 }
 
-func (m *motorElectric) bind(b *binding) { m.voltage, m.powFactor = b.p[m.U], b.p[m.cos] }
+// bind follows that of the law.
+func (m *motorElectric) bind(b *binding, l *motorLaw) {
+	m.voltage, m.reactive = b.p[m.U], l.induction.RatedReactivePower(b.p[m.cos])
+}
 
 // book writes current and power factor at torque T, speed w and power P at the terminals. A motor that neither
 // turns nor holds is without current.
@@ -75,16 +78,18 @@ func (m *motorElectric) book(k *booking, l *motorLaw, T, w, P float64, off bool)
 	case l.wound:
 		k.put(m.sigI, l.servo.Current(T))
 	default:
-		k.put(m.sigI, m.current(l, T))
-		k.put(m.sigPF, math.Abs(P)/math.Max(math.Hypot(P, l.induction.ReactivePower(T, m.powFactor)), 1e-9))
+		Q := m.reactive * l.induction.ReactiveShare(T)
+		k.put(m.sigI, m.current(l, T, Q))
+		k.put(m.sigPF, math.Abs(P)/max(math.Sqrt(P*P+Q*Q), 1e-9))
 	}
 }
 
-// current is that of an induction motor at a torque, its voltage falling with its speed below the
-// rated one, so that the current is that at rated speed.
-func (m *motorElectric) current(l *motorLaw, T float64) float64 {
+// current is that of an induction motor at a torque, with a reactive power of Q, its voltage falling with its speed
+// below the rated one, so that the current is that at rated speed.
+func (m *motorElectric) current(l *motorLaw, T, Q float64) float64 {
 	w := l.induction.RatedSpeed
-	return math.Hypot(T*w+l.induction.LossTorqueSpeed(T, w), l.induction.ReactivePower(T, m.powFactor)) / (math.Sqrt(3) * m.voltage)
+	P := T*w + l.induction.LossTorqueSpeed(T, w)
+	return math.Sqrt(P*P+Q*Q) / (math.Sqrt(3) * m.voltage)
 }
 
 // motorStart is what it costs to leave standstill or soft idle.

@@ -82,7 +82,7 @@ func (m *electricModel) bind(b *binding) {
 	w := b.p[m.n]
 	m.law.bind(b)
 	m.told = b.commanded(m.id, duty.Command)
-	m.electric.bind(b)
+	m.electric.bind(b, &m.law)
 	m.start.bind(b)
 	size := m.k.shafts[m.shaft].size(b.p)
 	m.wPer = b.scales.q / size
@@ -124,7 +124,7 @@ func (m *electricModel) begin(s *step) {
 		case m.gives:
 			m.push(s, v*m.most)
 		default:
-			m.turn(s, math.Max(m.lo, v*m.hi))
+			m.turn(s, max(m.lo, v*m.hi))
 		}
 	case followsAxis:
 		a := &s.axes[m.axis]
@@ -135,7 +135,7 @@ func (m *electricModel) begin(s *step) {
 		case a.given != duty.MotionLoad && m.gives:
 			m.push(s, m.dir*a.command*m.most)
 		case a.given != duty.MotionLoad:
-			m.turn(s, math.Max(m.lo, m.dir*a.command*m.hi))
+			m.turn(s, max(m.lo, m.dir*a.command*m.hi))
 		default:
 			s.bounds(m.speed, m.lo, m.hi)
 			m.tracking, m.wanted = true, a.scaledDemand
@@ -161,7 +161,7 @@ func (m *electricModel) turn(s *step, w float64) {
 	if w != 0 {
 		m.way = machines.Sign(w)
 	}
-	s.bounds(m.speed, math.Min(0, w), math.Max(0, w))
+	s.bounds(m.speed, min(0, w), max(0, w))
 	if m.slips && w != 0 {
 		s.bounds(m.speed, 0, 2*m.field)
 	}
@@ -204,7 +204,7 @@ func (m *electricModel) book(*booking) {} // after all machines: bookShaft
 func (m *electricModel) bookShaft(k *booking) {
 	w, T := k.val(m.speed)*m.wPer, k.shaft[m.shaft].torque
 	if m.limit >= 0 && math.Abs(k.val(m.speed)) <= stalled*m.hi { // it gives what it can
-		T = math.Max(-m.most*m.tPer, math.Min(m.most*m.tPer, T))
+		T = max(-m.most*m.tPer, min(m.most*m.tPer, T))
 	}
 	P := T * w
 	loss := 0.0

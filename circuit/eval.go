@@ -1,8 +1,6 @@
 package circuit
 
 import (
-	"math"
-
 	"barlitre/circuit/balance"
 	"barlitre/circuit/duty"
 )
@@ -65,12 +63,12 @@ func (e *eval) plain() bool { return e.slopes == nil }
 
 // branch adds the flow unknown q from node a to node b.
 func (e *eval) branch(a, b, q slot) float64 {
-	v := e.val(q)
-	e.add(a, v)
-	e.add(b, -v)
-	if !e.plain() {
-		e.d(a, q, 1)
-		e.d(b, q, -1)
+	v, rows, known := e.val(q), e.rows, e.known
+	rows[a+known] += v
+	rows[b+known] -= v
+	if j := e.slopes; j != nil {
+		j.Add(int(a), int(q), 1)
+		j.Add(int(b), int(q), -1)
 	}
 	return v
 }
@@ -78,24 +76,26 @@ func (e *eval) branch(a, b, q slot) float64 {
 // drop adds the row of the flow unknown q between a and b: r(q) − (pa − pb),
 // where r and its slope dr are the pressure drop at q.
 func (e *eval) drop(a, b, q slot, r, dr float64) {
-	e.add(q, r+minResistance*e.val(q)-(e.val(a)-e.val(b)))
-	if !e.plain() {
-		e.d(q, q, dr+minResistance)
-		e.d(q, a, -1)
-		e.d(q, b, 1)
+	all, known := e.all, e.known
+	e.rows[q+known] += r + minResistance*all[q+known] - (all[a+known] - all[b+known])
+	if j := e.slopes; j != nil {
+		j.Add(int(q), int(q), dr+minResistance)
+		j.Add(int(q), int(a), -1)
+		j.Add(int(q), int(b), 1)
 	}
 }
 
 // conduct adds the linear flow k·(pa − pb) from a to b and returns it.
 func (e *eval) conduct(a, b slot, k float64) float64 {
-	q := k * (e.val(a) - e.val(b))
-	e.add(a, q)
-	e.add(b, -q)
-	if !e.plain() {
-		e.d(a, a, k)
-		e.d(a, b, -k)
-		e.d(b, a, -k)
-		e.d(b, b, k)
+	all, rows, known := e.all, e.rows, e.known
+	q := k * (all[a+known] - all[b+known])
+	rows[a+known] += q
+	rows[b+known] -= q
+	if j := e.slopes; j != nil {
+		j.Add(int(a), int(a), k)
+		j.Add(int(a), int(b), -k)
+		j.Add(int(b), int(a), -k)
+		j.Add(int(b), int(b), k)
 	}
 	return q
 }
@@ -103,6 +103,7 @@ func (e *eval) conduct(a, b slot, k float64) float64 {
 // hot is what every step of a run needs, sorted out once.
 type hot struct {
 	found      []foundNode
+	leaking    []int32 // these, as places in the vectors of eval
 	free       []shaft
 	gears      []*gearboxModel
 	onShafts   []shaftBooker
@@ -147,6 +148,7 @@ func (r *run) sort() {
 	for i, n := range r.nodes {
 		if n.slot >= 0 && !n.pilot {
 			r.found = append(r.found, foundNode{i, n.slot})
+			r.leaking = append(r.leaking, int32(n.slot+r.ev.known))
 		}
 	}
 	for _, s := range r.shafts {
@@ -180,13 +182,7 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	e := &r.ev
 	e.slopes = j
 	clear(e.rows)
-	x, g, rest, restK := e.all[e.known:], e.rows[e.known:], r.step.rest, r.step.restK
-	for _, at := range r.found {
-		n := at.slot
-		p, k := x[n], restK[n]
-		g[n] += r.leak*p + k*(p-rest[n])
-		e.d(n, n, r.leak+k)
-	}
+	r.leaks(e)
 	for i := range r.free {
 		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
 		s := &r.free[i]
@@ -198,65 +194,23 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	}
 }
 
-// throat is a turbulent restriction, scaled: drop = q·√(q²+ql²)/k², laminar below
-// ql, so that its slope at zero flow is finite. ql is the flow at 1e-6 bar: at
-// 0.01 bar the flow is 2.5e-5 below that of the square-root law.
-type throat struct {
-	k2, ql2 float64
-	perK2   float64 // 1/k², 0 of an ideal opening
-}
-
-// laminar is ql²/k², twice the drop at which a throat turns from laminar to turbulent.
-const laminar = 1e-8
-
-// throatOf makes a throat from a nominal point: qN at dpN, both scaled. Without a
-// drop, or without flow limit, it is an ideal opening.
-func throatOf(qN, dpN float64) throat {
-	if dpN <= 0 || math.IsInf(qN, 1) {
-		return throat{k2: math.Inf(1)}
+// leaks sets the rows of nodes to what ties them to tank, and adds what ties them to
+// what a held load asks for.
+func (r *run) leaks(e *eval) {
+	rows, all, leak := e.rows, e.all, r.leak
+	for _, i := range r.leaking {
+		rows[i] = leak * all[i]
 	}
-	k2 := qN * qN / dpN
-	return throat{k2, laminar * k2, 1 / k2}
-}
-
-// at returns the drop at flow q of the fully open throat and its slope.
-func (t *throat) at(q float64) (r, dr float64) {
-	if t.perK2 == 0 {
-		return 0, 0
-	}
-	h := math.Sqrt(q*q + t.ql2)
-	if h == 0 {
-		return 0, 0
-	}
-	return q * h * t.perK2, (h + q*q/h) * t.perK2
-}
-
-// flow is the inverse of at: the flow of the fully open throat at a drop, and its
-// slope. With s = √(d² + 4Δp²), d = ql²/k², it is q²+ql² = h² = k²(s + d)/2.
-func (t *throat) flow(dp float64) (q, dq float64) {
-	s := math.Sqrt(laminar*laminar + 4*dp*dp)
-	h := math.Sqrt(0.5 * t.k2 * (s + laminar))
-	return dp * t.k2 / h, h / s
-}
-
-// first is a flow for a cold start: what passes at some 10 bar, at most a twentieth of
-// the flow scale. A small throat that starts with more has a drop beyond all measure.
-func (t throat) first() float64 { return math.Min(0.05, 0.3*math.Sqrt(t.k2)) }
-
-// chord is the slope that leads from a drop with its flow to the drop that a flow q
-// belongs to, where the two lie far apart: at flows near zero the tangent, which a root
-// makes flat, would lead far past it. Elsewhere it is the tangent.
-func (t *throat) chord(dp, full, q, tangent float64) float64 {
-	if r := q / full; r > 0.75 && r < 1.33 { // so are the drops not far apart
-		return tangent
-	}
-	to, _ := t.at(q)
-	if d := dp - to; math.Abs(d) > 0.5*math.Max(math.Abs(dp), math.Abs(to)) && d != 0 {
-		if s := (full - q) / d; s > 0 {
-			return s
+	if j := e.slopes; j != nil {
+		for _, at := range r.found {
+			j.Add(int(at.slot), int(at.slot), leak)
 		}
 	}
-	return tangent
+	for _, n := range r.step.resting {
+		k := r.step.restK[n]
+		e.add(n, k*(e.val(n)-r.step.rest[n]))
+		e.d(n, n, k)
+	}
 }
 
 // model is a block as the balance sees it. One model serves one run at a time.
@@ -319,6 +273,7 @@ type step struct {
 	now      *eval     // that hold them and the known numbers
 	rest     []float64 // by node unknown: reference pressure of the leak
 	restK    []float64 // and its conductance
+	resting  []slot    // nodes that have one
 	pScale   float64
 }
 
@@ -337,6 +292,9 @@ type axisStep struct {
 // restAt gives a node that nothing else determines a place to rest [Pa].
 func (s *step) restAt(node slot, pressure float64) {
 	if node >= 0 {
+		if s.restK[node] == 0 {
+			s.resting = append(s.resting, node)
+		}
 		s.rest[node], s.restK[node] = pressure/s.pScale, restLeak
 	}
 }

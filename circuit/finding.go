@@ -25,6 +25,39 @@ type Finding struct {
 	Time      float64 `json:"t_s,omitempty"` // s, where it shows first or worst
 	Text      string  `json:"text"`
 	Line      int     `json:"line,omitempty"` // in the file
+	Cause     Cause   `json:"-"`              // what mends it hangs on this
+	Port      PortRef `json:"-"`              // where one is meant
+}
+
+// Cause says what a finding is about, for what mends it; "" where there is no one cure.
+type Cause string
+
+// The causes. Those named by a parameter have it in Finding.Parameter.
+const (
+	MissingValue  Cause = "missing value"  // a parameter that must be given
+	OpenPort      Cause = "open port"      // a port that must be connected
+	OpenLine      Cause = "open line"      // a line that leads nowhere
+	NoTank        Cause = "no tank"        // oil without a way to a tank; Port may lead there
+	NoRelief      Cause = "no relief"      // a side without a relief valve
+	ReliefTooLow  Cause = "relief too low" // it opens before a pump stops delivering
+	NoDrive       Cause = "no drive"       // nothing turns a shaft
+	NoConverter   Cause = "no converter"   // a motor that only a converter can run so
+	NeedsNoValue  Cause = "needs no value" // a parameter that must go
+	HeldByValve   Cause = "held by valve"  // what shuts its oil in is a valve
+	HeldOtherwise Cause = "held otherwise" // than the actuator beside it
+	RestNotSaid   Cause = "rest not said"  // what pumps do while all stands
+	JoinsNothing  Cause = "joins nothing"  // a junction
+	NoLoadSignal  Cause = "no load signal" // a pump that follows a load pressure
+	LoadNotHeld   Cause = "load not held"  // by a valve or brake of its own; the choice is the user's
+)
+
+// because gives a finding its cause, and the port that is meant: by its name for one of
+// the block that it is about, or "".
+func (f *Finding) because(c Cause, port string) {
+	f.Cause = c
+	if port != "" {
+		f.Port = PortRef{f.Block, port}
+	}
 }
 
 func (f Finding) Error() string {
@@ -32,6 +65,19 @@ func (f Finding) Error() string {
 		return fmt.Sprintf("line %d: %s", f.Line, f.Text)
 	}
 	return f.Text
+}
+
+// Marked reports whether a finding is of that block and not of all of its kind, so that
+// it is worth a mark where the block is drawn: what stops, what is likely wrong, and a
+// caution that check or a run found there. Notes and general cautions are not.
+func (f *Finding) Marked() bool {
+	switch f.Level {
+	case Stops, Warns:
+		return f.Block != ""
+	case Caution:
+		return f.Block != "" && (f.Cause != "" || f.Time > 0)
+	}
+	return false
 }
 
 // AnyStops reports whether a finding keeps the circuit from being solved.

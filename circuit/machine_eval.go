@@ -10,11 +10,13 @@ func (m *machine) evalMachine(e *eval) {
 	set, w := e.val(m.e), e.val(m.speed)
 	q := set * w * m.d // ideal flow, S to P
 	e.add(m.S, q)
-	e.d(m.S, m.e, w*m.d)
-	e.d(m.S, m.speed, set*m.d)
 	e.add(m.P, -q)
-	e.d(m.P, m.e, -w*m.d)
-	e.d(m.P, m.speed, -set*m.d)
+	if !e.plain() {
+		e.d(m.S, m.e, w*m.d)
+		e.d(m.S, m.speed, set*m.d)
+		e.d(m.P, m.e, -w*m.d)
+		e.d(m.P, m.speed, -set*m.d)
+	}
 	if m.chart != nil {
 		m.evalMapped(e)
 	} else {
@@ -49,6 +51,9 @@ func (m *machine) evalSlip(e *eval) {
 
 // turbulent is a share of the turbulent slip from a to b and its slope, scaled.
 func (m *machine) turbulent(dp, share float64) (q, slope float64) {
+	if m.law.Cst == 0 {
+		return 0, 0
+	}
 	q, slope = m.law.TurbulentSlip(dp*m.scale.p, m.oil.Density)
 	return share * q / m.scale.q, share * slope * m.scale.p / m.scale.q
 }
@@ -68,6 +73,9 @@ func (m *machine) evalTurbulent(e *eval, a, b slot, share float64) {
 
 // compression is the flow lost to compression from P to S and its slopes by drop, setting and speed, scaled.
 func (m *machine) compression(set, w, dp float64) (q, byDP, byE, byW float64) {
+	if m.law.K == 0 && m.law.Kd == 0 {
+		return 0, 0, 0, 0
+	}
 	q, byDP, byE, byW = m.law.CompressionFlow(set, w*m.wPer, dp*m.scale.p, m.oil.bulk(), m.oil.Air)
 	return q / m.scale.q, byDP * m.scale.p / m.scale.q, byE / m.scale.q, byW * m.wPer / m.scale.q
 }
@@ -161,6 +169,9 @@ func (m *machine) torque(e *eval) torque {
 // addTorque adds k times a torque of the machine to a row.
 func (m *machine) addTorque(e *eval, row slot, k float64, t torque) {
 	e.add(row, k*t.need)
+	if e.plain() {
+		return
+	}
 	e.d(row, m.e, k*t.e)
 	e.d(row, m.speed, k*t.w)
 	e.d(row, m.P, k*t.p)

@@ -161,7 +161,7 @@ func (m *pistonModel) ends(s *step, a *axisStep) {
 	}
 	m.lo, m.hi = -room(x+slack), room(m.way+slack-x)
 	// Bounds so near count as much as a force, else they would hide what is left of it.
-	s.solver.Weight[m.v] = 1 / math.Max(touchFlow, math.Min(1, math.Min(m.hi, -m.lo)))
+	s.solver.Weight[m.v] = 1 / max(touchFlow, min(1, min(m.hi, -m.lo)))
 	// Near an end the row of σ is as steep as the speed left is small.
 	if m.rests > 0 {
 		m.steep = 1 / gripFlow
@@ -186,9 +186,9 @@ func (m *pistonModel) begin(s *step) {
 	}
 	m.load *= m.share / m.force
 	if a.standing && m.hold == "valve" {
-		s.restAt(m.pA, math.Max(a.load, 0)*m.share/m.A)
+		s.restAt(m.pA, max(a.load, 0)*m.share/m.A)
 		if m.B > 0 {
-			s.restAt(m.pB, math.Max(-a.load, 0)*m.share/m.B)
+			s.restAt(m.pB, max(-a.load, 0)*m.share/m.B)
 		}
 	}
 }
@@ -248,8 +248,10 @@ func (m *pistonModel) eval(e *eval) {
 	}
 	// σ sits at 1 while v > 0, at −1 while v < 0, and anywhere between at v = 0.
 	e.add(m.sigma, -v*m.steep+sg*m.rests)
-	e.d(m.sigma, m.v, -m.steep)
-	e.d(m.sigma, m.sigma, m.rests)
+	if !e.plain() {
+		e.d(m.sigma, m.v, -m.steep)
+		e.d(m.sigma, m.sigma, m.rests)
+	}
 }
 
 func (m *pistonModel) book(k *booking) {

@@ -244,8 +244,10 @@ func (r *run) begin(k int, share float64) {
 			}
 		}
 	}
-	clear(s.rest)
-	clear(s.restK)
+	for _, n := range s.resting {
+		s.restK[n] = 0
+	}
+	s.resting = s.resting[:0]
 	for _, m := range r.models {
 		m.begin(s)
 	}
@@ -328,22 +330,20 @@ func (r *run) report(unbalanced bool) {
 // voids finds what is missing at nodes that rest on the floor, and books what the leak
 // of nodes takes: nothing that counts, but for pressures far beyond any rating.
 func (r *run) voids(b *booking) {
-	leaked := 0.0
+	x, lo, leaked := b.all[b.known:], r.solver.Lo, 0.0
 	for _, at := range r.found {
-		n := int(at.slot)
-		p := b.val(at.slot)
-		leaked += (leak*p + r.step.restK[n]*(p-r.step.rest[n])) * p
+		p, void := x[at.slot], 0.0
+		leaked += leak * p * p
+		if p <= lo[at.slot]+1e-9 {
+			void = b.m3s(max(0, r.solver.Row(int(at.slot))))
+			b.pow[r.Compiled.void] -= floorPressure * void
+		}
+		r.sample.Void[at.node] = void
+	}
+	for _, n := range r.step.resting {
+		leaked += r.step.restK[n] * (x[n] - r.step.rest[n]) * x[n]
 	}
 	b.pow[r.Compiled.void] += b.watts(leaked)
-	for _, n := range r.found {
-		r.sample.Void[n.node] = 0
-		if b.val(n.slot) > r.solver.Lo[n.slot]+1e-9 {
-			continue
-		}
-		q := b.m3s(max(0, r.solver.Row(int(n.slot))))
-		r.sample.Void[n.node] = q
-		b.pow[r.Compiled.void] += -floorPressure * q
-	}
 }
 
 func (r *run) axesNow(unbalanced bool) {

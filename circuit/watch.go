@@ -240,13 +240,13 @@ func (w *Watch) take(s *Sample) {
 func (a *axisWatch) take(now AxisNow, given duty.Given, top, t, dt float64) {
 	a.travel += dt * (a.lastV + now.Speed) / 2
 	a.lastV = now.Speed
-	a.lo, a.hi = math.Min(a.lo, a.travel), math.Max(a.hi, a.travel)
+	a.lo, a.hi = min(a.lo, a.travel), max(a.hi, a.travel)
 	a.stops(now, t, dt)
 	lost := 0.0
 	if given == duty.MotionLoad {
 		switch {
 		case now.Standing:
-			if v := math.Abs(now.Speed); v > math.Max(1e-3*top, stillSpeed) && v > math.Abs(a.falls) {
+			if v := math.Abs(now.Speed); v > max(1e-3*top, stillSpeed) && v > math.Abs(a.falls) {
 				a.falls, a.tFall = now.Speed, t
 			}
 		default:

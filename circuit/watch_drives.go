@@ -48,7 +48,7 @@ func (d *driveWatch) take(s *Sample, dt float64) {
 	if T := -s.Signals[d.torque]; T > d.brakes {
 		d.brakes, d.tBrakes = T, s.T
 	}
-	most := d.limit * (1 + d.grow*math.Max(0, 1-v/d.set))
+	most := d.limit * (1 + d.grow*max(0, 1-v/d.set))
 	held := !s.Stopped && T >= most*(1-1e-6) && (!d.steady || v < d.set*(1-1e-3))
 	if held && d.last {
 		d.seconds += dt

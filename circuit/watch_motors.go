@@ -69,7 +69,7 @@ func (m *motorWatch) take(s *Sample, dt float64) {
 	m.square += dt * (T*T + m.last*m.last) / 2
 	m.heated += dt * (h*h + m.lastH*m.lastH) / 2
 	m.amps += dt * (I*I + m.lastI*m.lastI) / 2
-	m.ampere = math.Max(m.ampere, I)
+	m.ampere = max(m.ampere, I)
 	if math.Abs(T) > m.peak {
 		m.peak, m.tPeak = math.Abs(T), s.T
 	}
@@ -142,8 +142,8 @@ func (m *motorWatch) currentGate(w *Watch) Gate {
 		rated = m.rated / kT.SI
 	} else {
 		l.induction = machines.InductionMotor{RatedPower: w.value(m.b, "rated_power"), RatedSpeed: m.wN, Efficiency: w.value(m.b, "efficiency"), FixedShare: w.value(m.b, "fixed_share")}
-		e := motorElectric{voltage: w.value(m.b, "voltage"), powFactor: w.value(m.b, "power_factor")}
-		rated = e.current(&l, m.rated)
+		e := motorElectric{voltage: w.value(m.b, "voltage")}
+		rated = e.current(&l, m.rated, l.induction.ReactivePower(m.rated, w.value(m.b, "power_factor")))
 	}
 	rms := math.Sqrt(m.amps / w.span)
 	return gateOf(m.b, "power_factor", "mean square current", rms, rated, units.Current, 0, "from torque, name plate and a generic part-load curve (assumed); at most "+show(m.ampere, units.Current))

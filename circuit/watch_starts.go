@@ -111,7 +111,7 @@ func (r reachOf) available(b *Block, port string) float64 {
 				continue
 			}
 			if v, ok := r.source(r.w.c.circuit.Block(p.Block), p.Port); ok {
-				best, found = math.Max(best, math.Min(v, r.relieved(n))), true
+				best, found = max(best, min(v, r.relieved(n))), true
 			}
 		}
 		return false
@@ -119,7 +119,7 @@ func (r reachOf) available(b *Block, port string) float64 {
 	if !found {
 		best = math.Inf(1)
 	}
-	return math.Min(best, r.relieved(start))
+	return min(best, r.relieved(start))
 }
 
 // source is the pressure a block can give at a port, +Inf where only valves limit it.
@@ -154,7 +154,7 @@ func (r reachOf) relieved(n *net) float64 {
 			}
 			for _, key := range []string{"set", "crack"} {
 				if _, ok := b.Values[key]; ok {
-					low = math.Min(low, r.w.value(b, key))
+					low = min(low, r.w.value(b, key))
 				}
 			}
 		}
@@ -214,7 +214,7 @@ func (w *Watch) creepGates(i int) []Gate {
 	if w.c.axes[i].Kind == duty.Rotary {
 		u = units.Unit{Symbol: "rad/min", Dim: units.AngularSpeed, Factor: 1.0 / 60}
 	}
-	limit := math.Max(duty.StandstillShare*top, stillSpeed)
+	limit := max(duty.StandstillShare*top, stillSpeed)
 	mean := a.crept / a.stood
 	g := Gate{Block: b.ID, Parameter: "hold", Name: "creep while held", Value: mean, Limit: limit, Unit: u, T: a.tCreep, Passed: mean <= limit, level: Caution,
 		Reason: fmt.Sprintf("mean over %s of standstill a cycle, at most %s; %s; limit: a thousandth of its highest speed, what counts as standing", clock(a.stood/float64(max(w.cycles, 1))), units.Format(a.creep, u, 3), holdWords[w.c.movers[i].hold])}
@@ -228,7 +228,7 @@ func (w *Watch) creepGates(i int) []Gate {
 func (w *Watch) fastest(i int) float64 {
 	for j, s := range w.c.signals {
 		if s.Block == w.c.movers[i].block && (s.What == "v" || s.What == "w") {
-			v := math.Max(math.Abs(w.ext.min[j]), math.Abs(w.ext.max[j]))
+			v := max(math.Abs(w.ext.min[j]), math.Abs(w.ext.max[j]))
 			if s.What == "w" {
 				v /= w.value(w.c.circuit.Block(s.Block), "gear")
 			}

@@ -81,9 +81,18 @@ const DefaultReactiveShare = 0.7
 // with its power factor at rated load, cos φN in (0, 1], and q0 = DefaultReactiveShare: magnetizing and leakage
 // part of the usual equivalent circuit, at rated voltage and frequency.
 func (m InductionMotor) ReactivePower(t, powerFactor float64) float64 {
+	return m.RatedReactivePower(powerFactor) * m.ReactiveShare(t)
+}
+
+// RatedReactivePower is QN of equation (6b) [var].
+func (m InductionMotor) RatedReactivePower(powerFactor float64) float64 {
+	return m.RatedPower / m.Efficiency * math.Tan(math.Acos(powerFactor))
+}
+
+// ReactiveShare is the reactive power at shaft torque t over the rated one, equation (6b).
+func (m *InductionMotor) ReactiveShare(t float64) float64 {
 	load := t * m.RatedSpeed / m.RatedPower
-	qN := m.RatedPower / m.Efficiency * math.Tan(math.Acos(powerFactor))
-	return qN * (DefaultReactiveShare + (1-DefaultReactiveShare)*load*load)
+	return DefaultReactiveShare + (1-DefaultReactiveShare)*load*load
 }
 
 // Inertia returns the moment of inertia [kg·m²] that a motor of rated power p [W] with a number of poles usually has,

@@ -10,6 +10,8 @@ import (
 	"time"
 
 	"barlitre/audit"
+	"barlitre/audit/fixfirst"
+	"barlitre/audit/sitecheck"
 	"barlitre/circuit"
 )
 
@@ -52,6 +54,7 @@ type Document struct {
 	stop     context.CancelFunc
 	done     int
 	total    int
+	advice   adviser
 
 	session *session // nil when nothing unsaved is kept
 
@@ -88,7 +91,8 @@ func newDocument(opt Options, solve solver) *Document {
 	if opt.AutosaveAfter <= 0 {
 		opt.AutosaveAfter = autosaveAfter
 	}
-	d := &Document{opt: opt, solve: solve, stop: func() {}, wake: make(chan struct{}, 1), touched: make(chan struct{}, 1), quit: make(chan struct{})}
+	d := &Document{opt: opt, solve: solve, stop: func() {}, wake: make(chan struct{}, 1), touched: make(chan struct{}, 1), quit: make(chan struct{}),
+		advice: adviser{prices: &fixfirst.Cache{}, plans: &sitecheck.Cache{}}}
 	f, _ := audit.Parse([]byte(emptyText), nil, "")
 	d.now = state{file: f, text: []byte(emptyText), revision: 1}
 	d.saved, d.opened = d.now.text, 1
@@ -111,6 +115,7 @@ func (d *Document) end(giveUp bool) error {
 	again := d.closed
 	d.closed, d.wanted = true, 0
 	d.stop()
+	d.stopAdvice()
 	d.mu.Unlock()
 	if again {
 		return nil

@@ -126,7 +126,7 @@ func randomEdit(d *Document, r *rand.Rand) error {
 	case 1:
 		return d.SetPoint("baling", "ram.load", 5, fmt.Sprintf("%d kN", 60+r.Intn(40)))
 	case 2:
-		return d.Move("As found", map[string][2]float64{"RV1": {float64(r.Intn(50)), 34}, "P1": {24, float64(r.Intn(50))}})
+		return move(d, "As found", map[string][2]float64{"RV1": {float64(r.Intn(50)), 34}, "P1": {24, float64(r.Intn(50))}})
 	}
 	return d.Set("C1.friction", fmt.Sprintf("%.1f kN", 1.5+float64(r.Intn(20))/10))
 }
@@ -142,7 +142,7 @@ func TestRefusedEditChangesNothing(t *testing.T) {
 		"unit":    b.Set("As found/RV1.crack", "5 m"),
 		"error":   b.Edit("x", func(f *audit.File) error { return errors.Join(f.Set("As found/note", "two"), boom) }),
 		"panic":   b.Edit("x", func(f *audit.File) error { _ = f.Set("As found/note", "two"); panic("oh") }),
-		"one bad": b.Move("As found", map[string][2]float64{"P1": {1, 2}, "X9": {1, 2}}),
+		"one bad": move(b.Document, "As found", map[string][2]float64{"P1": {1, 2}, "X9": {1, 2}}),
 	} {
 		if err == nil {
 			t.Errorf("%s: accepted", name)
@@ -190,7 +190,10 @@ func TestMerging(t *testing.T) {
 			t.Errorf("undone %q, want %q", got, want)
 		}
 	}
-	drag := func(x float64) { t.Helper(); check(t, b.Move("As found", map[string][2]float64{"RV1": {x, 34}})) }
+	drag := func(x float64) {
+		t.Helper()
+		check(t, move(b.Document, "As found", map[string][2]float64{"RV1": {x, 34}}))
+	}
 	step := func(bar int) { t.Helper(); check(t, b.Step("As found/RV2.crack", fmt.Sprintf("%d bar", bar))) }
 
 	for x := range 10 {

@@ -3,7 +3,6 @@ package document
 import (
 	"bytes"
 	"fmt"
-	"slices"
 	"strings"
 
 	"barlitre/audit"
@@ -89,26 +88,10 @@ func (d *Document) Step(target, quantity string) error {
 	return d.EditMerging("set "+target, setName(d.File(), target), func(f *audit.File) error { return f.Set(target, quantity) })
 }
 
-// Move puts blocks of a circuit at places on its sheet [modules]. Steps that move
-// the same blocks are undone together; see EditMerging.
-func (d *Document) Move(circuit string, at map[string][2]float64) error {
-	var ids []string
-	for id := range at {
-		ids = append(ids, id)
-	}
-	slices.Sort(ids)
-	name := fmt.Sprintf("Move %d blocks", len(ids))
-	if len(ids) == 1 {
-		name = "Move " + ids[0]
-	}
-	return d.EditMerging("move "+circuit+"/"+strings.Join(ids, " "), name, func(f *audit.File) error {
-		for _, id := range ids {
-			if err := f.SetAt(circuit, id, at[id]); err != nil {
-				return err
-			}
-		}
-		return nil
-	})
+// Place puts blocks and notes at places on a sheet, as audit.File.Place does. Steps of one
+// key are undone together; see EditMerging.
+func (d *Document) Place(key, name, circuit string, blocks map[string][2]float64, notes map[int][2]float64) error {
+	return d.EditMerging(key, name, func(f *audit.File) error { return f.Place(circuit, blocks, notes) })
 }
 
 // SetPoint changes one value of a duty, as audit.File.SetPoint does.

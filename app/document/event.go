@@ -19,6 +19,8 @@ const (
 	Saved                               // Revision is on disk
 	Autosaved                           // Revision is kept against a crash
 	AutosaveFailed                      // Err; it is tried again after the next edit
+	Advising                            // Done of Total, of what is to be put right first and measured
+	Advised                             // Advice has it, or Err says why not
 )
 
 // Event is something the screens may want to show.

@@ -116,7 +116,7 @@ func (p *player) edit() (what string, err error) {
 	if p.r.IntN(20) == 0 {
 		return p.dutyEdit(f)
 	}
-	switch k := p.r.IntN(100); {
+	switch k := p.r.IntN(112); {
 	case len(e.Blocks) > 10 || k < 12:
 		ids := p.ids(&e)
 		for _, id := range ids {
@@ -201,14 +201,50 @@ func (p *player) edit() (what string, err error) {
 	case k < 99:
 		_, err := p.d.AddGroup(name, fmt.Sprintf("[group] %d", n), p.ids(&e)...)
 		return "group", err
+	case k < 100:
+		return "regroup", p.d.SetGroup(name, p.r.IntN(len(e.Groups)+1), fmt.Sprintf("{group}: %d", n), p.ids(&e)...)
+	case k < 101:
+		return "ungroup", p.d.DeleteGroup(name, p.r.IntN(len(e.Groups)+1))
+	case k < 104:
+		return "bend", p.d.Bend(name, "L", []int{line}, p.runs())
+	case k < 107:
+		return "straighten", p.d.Bend(name, "L", []int{line}, nil)
+	case k < 109:
+		at := map[string][2]float64{}
+		for _, id := range p.ids(&e) {
+			at[id] = p.place()
+		}
+		notes := map[int][2]float64{}
+		if len(e.Notes) > 0 {
+			notes[p.r.IntN(len(e.Notes))] = p.place()
+		}
+		return "place", p.d.Edit("Move", func(f *audit.File) error { return f.Place(name, at, notes) })
+	case k < 110:
+		return "renote", p.d.SetNote(name, p.r.IntN(len(e.Notes)+1), fmt.Sprintf("# %d\n\tor: so", n), p.place())
+	case k < 111:
+		var side []circuit.PortRef
+		if line < len(e.Lines) {
+			side = e.Lines[line].Ports[:1+p.r.IntN(len(e.Lines[line].Ports))]
+		}
+		return "split", p.d.Edit("Delete branch", func(f *audit.File) error { return f.SplitLine(name, line, side...) })
 	}
 	return "set", p.d.Set(name+"/"+pick(p, e.Blocks).ID+".nominal_flow", fmt.Sprintf("%d L/min", n))
+}
+
+// runs are pieces of line laid by hand.
+func (p *player) runs() (out [][2][2]float64) {
+	for i := p.r.IntN(3); i >= 0; i-- {
+		a, b := p.place(), p.place()
+		b[i%2] = a[i%2]
+		out = append(out, [2][2]float64{a, b})
+	}
+	return out
 }
 
 // Random edits, undone and done again, never break a file, and lose no comment but
 // those in what was deleted.
 func TestRandomEdits(t *testing.T) {
-	edits, seed := 2000, uint64(20)
+	edits, seed := 2500, uint64(20)
 	if s := os.Getenv("BARLITRE_LONG"); s != "" {
 		n, err := strconv.Atoi(s)
 		check(t, err)
@@ -296,7 +332,7 @@ func TestRandomEdits(t *testing.T) {
 	if string(b.File().Bytes()) != last {
 		t.Error("done again, the text is not the last one")
 	}
-	for _, what := range []string{"delete", "add", "connect", "join", "junction", "disconnect", "rename", "duplicate", "paste", "rotate", "mirror", "move", "copy", "swap", "remove", "phase", "group", "set", "stage"} {
+	for _, what := range []string{"delete", "add", "connect", "join", "junction", "disconnect", "rename", "duplicate", "paste", "rotate", "mirror", "move", "copy", "swap", "remove", "phase", "group", "set", "bend", "place", "split", "regroup", "ungroup", "straighten", "stage"} {
 		if done[what] < edits/1000 {
 			t.Errorf("%s was done %d times", what, done[what])
 		}

@@ -3,6 +3,7 @@ package document
 import (
 	"barlitre/audit"
 	"barlitre/circuit/duty"
+	"fmt"
 )
 
 // AddCircuit adds an empty sheet.
@@ -66,6 +67,16 @@ func (d *Document) SetGroup(circuitName string, group int, label string, ids ...
 // DeleteGroup takes a box away; its blocks stay.
 func (d *Document) DeleteGroup(circuitName string, group int) error {
 	return d.Edit("Delete group", func(f *audit.File) error { return f.DeleteGroup(circuitName, group) })
+}
+
+// Bend lays a line by hand, as audit.File.Bend does; without runs it is straightened.
+// Steps that bend one line are undone together; see EditMerging.
+func (d *Document) Bend(circuitName, line string, lines []int, runs [][2][2]float64) error {
+	do := func(f *audit.File) error { return f.Bend(circuitName, lines, runs) }
+	if len(runs) == 0 {
+		return d.Edit("Straighten line "+line, do)
+	}
+	return d.EditMerging(fmt.Sprint("bend ", circuitName, lines), "Bend line "+line, do)
 }
 
 // AddAxis adds an axis.

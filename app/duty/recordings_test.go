@@ -34,7 +34,7 @@ func importing(t *testing.T, text, recording string) (*stationtest.Frame, *Stati
 	t.Helper()
 	t.Cleanup(intake.Inline())
 	f := stationtest.Open(t, New, text, nil)
-	f.Picked = recording
+	f.PickedFile = recording
 	click(t, f, "duty.recording", "duty.empty.recording")
 	if err := f.LastError(); err != nil {
 		t.Fatal(err)
@@ -221,7 +221,7 @@ func TestChangedRecordingIsReadAnew(t *testing.T) {
 func TestNoRecording(t *testing.T) {
 	t.Cleanup(intake.Inline())
 	f := stationtest.Open(t, New, pressFile, nil)
-	f.Picked = filepath.Join(t.TempDir(), "gone.csv")
+	f.PickedFile = filepath.Join(t.TempDir(), "gone.csv")
 	click(t, f, "duty.recording", "duty.empty.recording")
 	if err := f.LastError(); err == nil || !strings.Contains(err.Error(), "gone.csv") {
 		t.Error(err)

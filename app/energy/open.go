@@ -2,6 +2,7 @@ package energy
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"barlitre/audit"
@@ -45,7 +46,10 @@ func (s *Station) openLine(i int) {
 func (s *Station) take(about opened) {
 	s.open(about)
 	if i := s.lineOf(about); i >= 0 && s.lines[i].row.Block != "" {
-		s.ctx.Select(about.circuit, s.lines[i].row.Block)
+		name := s.circuitName(about.circuit)
+		if at := slices.IndexFunc(s.ctx.Doc().File().Circuits, func(c audit.CircuitEntry) bool { return c.Name == name }); at >= 0 {
+			s.ctx.Select(at, s.lines[i].row.Block)
+		}
 	}
 }
 

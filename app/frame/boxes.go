@@ -55,7 +55,11 @@ func (f *Frame) openBoxes() []*closable {
 func (f *Frame) escape() bool {
 	open := f.openBoxes()
 	if len(open) == 0 {
-		return false
+		pop, ok := f.win.Canvas().Overlays().Top().(*widget.PopUp)
+		if ok {
+			pop.Hide()
+		}
+		return ok
 	}
 	open[len(open)-1].Hide()
 	return true

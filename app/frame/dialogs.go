@@ -292,7 +292,7 @@ func (f *Frame) help() {
 // frameHelp is what holds at every station.
 const frameHelp = `Everywhere: the line at the top is the verdict; a click on one of its figures opens how it was calculated. It follows every change by itself; there is nothing to start.
 
-The strip below shows the duty at hand. Drag in it to move the clock, or with the strip in focus press the arrow keys, Page Up and Page Down, Home and End; Space lets the clock run.
+The strip below shows the duty at hand. Drag in it to move the clock, or with the strip in focus press the arrow keys, Page Up and Page Down, Home and End; Space lets the clock run, as fast as chosen beside Play: fitted, or so many times as fast as time.
 
 Ctrl+1 to Ctrl+6 go to the stations. Tab goes to the next field or button, Ctrl+Z takes a change back, Ctrl+Y does it again. Escape brings the old value back into a field.
 

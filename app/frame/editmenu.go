@@ -29,6 +29,15 @@ func (f *Frame) editItems() []*fyne.MenuItem {
 	add("Rotate (R)", nil, func() { f.act(station.Rotate) })
 	add("Mirror (M)", nil, func() { f.act(station.Mirror) })
 	add("Rename (F2)", nil, func() { f.act(station.Rename) })
+	out = append(out, fyne.NewMenuItemSeparator())
+	all := &fyne.ShortcutSelectAll{}
+	add("Select all", all, func() { f.fieldOr(all, station.SelectAll) })
+	add("Connect by keys (C)", nil, func() { f.act(station.Connect) })
+	add("Straighten line (S)", nil, func() { f.act(station.Straighten) })
+	group := &desktop.CustomShortcut{KeyName: fyne.KeyG, Modifier: fyne.KeyModifierShortcutDefault}
+	add("Group with a label", group, func() { f.act(station.Group) })
+	add("Add note (N)", nil, func() { f.act(station.AddNote) })
+	add("Zoom to selection (Z)", nil, func() { f.act(station.FitSelection) })
 	return out
 }
 

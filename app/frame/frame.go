@@ -33,11 +33,15 @@ type Frame struct {
 	duty     int
 	circuit  int
 	block    string
+	beside   string // the circuit picked, "" = the first
+	view     station.View
 	player   *player
 	laid     *audit.Report
 	laidOf   *audit.Solution
 	laidFor  units.System
-	solution *audit.Solution
+	solution *audit.Solution // of all circuits
+	pair     *audit.Solution // of the two shown
+	pairOf   pairOf
 
 	verdict *widgets.Figure
 	rail    *rail
@@ -161,6 +165,8 @@ func (f *Frame) told(e document.Event) {
 		f.changed(station.Solution)
 	case document.Solving:
 		f.verdict.Refresh()
+	case document.Advising, document.Advised:
+		f.changed(station.Advice)
 	default:
 		if e.Err != nil {
 			f.Say(e.Err.Error())
@@ -171,7 +177,7 @@ func (f *Frame) told(e document.Event) {
 
 // reset goes to the start of what was just opened.
 func (f *Frame) reset() {
-	f.clock, f.duty, f.circuit, f.block = 0, 0, -1, ""
+	f.clock, f.duty, f.circuit, f.block, f.beside = 0, 0, -1, "", ""
 	f.solution, _ = f.doc.Solution()
 	if file := f.doc.File(); file != nil && len(file.Duties) > 0 {
 		f.clock = f.firstMotion()
@@ -250,24 +256,27 @@ func (f *Frame) SetDuty(i int) {
 // Selected returns the block at hand.
 func (f *Frame) Selected() (int, string) { return f.circuit, f.block }
 
-// Select takes another block at hand.
+// Select takes another block at hand. One of a circuit that is not shown picks that.
 func (f *Frame) Select(circuit int, block string) {
-	if circuit != f.circuit || block != f.block {
-		f.circuit, f.block = circuit, block
-		f.changed(station.Selection)
+	if circuit == f.circuit && block == f.block {
+		return
 	}
+	f.circuit, f.block = circuit, block
+	w := station.Selection
+	if file := f.doc.File(); circuit >= 0 && circuit < len(file.Circuits) && f.pick(file.Circuits[circuit].Name) {
+		w |= station.Solution
+	}
+	f.changed(w)
 }
-
-// Solution returns the last finished solution.
-func (f *Frame) Solution() *audit.Solution { return f.solution }
 
 // Report lays the solution out in the user's units, once for each.
 func (f *Frame) Report() *audit.Report {
-	if f.solution == nil {
+	s := f.Solution()
+	if s == nil {
 		return nil
 	}
-	if f.laid == nil || f.laidOf != f.solution || f.laidFor != f.settings.system {
-		f.laid, f.laidOf, f.laidFor = f.solution.Report(f.settings.system), f.solution, f.settings.system
+	if f.laid == nil || f.laidOf != s || f.laidFor != f.settings.system {
+		f.laid, f.laidOf, f.laidFor = s.Report(f.settings.system), s, f.settings.system
 	}
 	return f.laid
 }

@@ -66,7 +66,7 @@ func (f *Frame) buildMenu() {
 	file := fyne.NewMenu("File", start,
 		item("Open…", key(fyne.KeyO, 0), func() { f.leave(f.askOpen) }), m.recent, fyne.NewMenuItemSeparator(),
 		item("Duty from a recording…", key(fyne.KeyI, 0), func() { f.recordings(station.Recordings.PickRecording) }), fyne.NewMenuItemSeparator(),
-		m.save, item("Save as…", key(fyne.KeyS, fyne.KeyModifierShift), func() { f.saveAs(nil) }), fyne.NewMenuItemSeparator(), quit)
+		m.save, item("Save as…", key(fyne.KeyS, fyne.KeyModifierShift), func() { f.saveAs(nil) }), f.printItems(), fyne.NewMenuItemSeparator(), quit)
 	edit := fyne.NewMenu("Edit", append([]*fyne.MenuItem{m.undo, m.redo, fyne.NewMenuItemSeparator()}, f.editItems()...)...)
 	job := fyne.NewMenu("Job")
 	for i, s := range f.stations {

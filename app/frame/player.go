@@ -2,16 +2,38 @@ package frame
 
 import (
 	"math"
+	"strconv"
 	"time"
 
 	"fyne.io/fyne/v2"
 )
 
-// player lets the clock run: a cycle in its own time, but in no less than 8 s and
-// no more than a minute.
+// player lets the clock run. As fitted, a cycle takes its own time, but no less than 8 s
+// and no more than a minute; with a factor the clock runs so many times as fast as time.
 type player struct {
-	f    *Frame
-	quit chan struct{}
+	f      *Frame
+	quit   chan struct{}
+	factor float64 // 0 = fitted
+}
+
+// speeds are the factors to choose from.
+var speeds = []float64{0, 0.1, 0.25, 0.5, 1, 2, 5, 10, 100}
+
+// speedText is a factor as chosen: "fitted", "0.25 ×".
+func speedText(factor float64) string {
+	if factor == 0 {
+		return "fitted"
+	}
+	return strconv.FormatFloat(factor, 'g', -1, 64) + "\u202f×"
+}
+
+// rate is how far the clock runs in a second [s].
+func (p *player) rate() float64 {
+	if p.factor > 0 {
+		return p.factor
+	}
+	from, to := p.f.span()
+	return (to - from) / math.Max(8, math.Min(60, to-from))
 }
 
 const framePeriod = 33 * time.Millisecond
@@ -26,7 +48,6 @@ func (p *player) start() {
 	quit := make(chan struct{})
 	p.quit = quit
 	p.f.strip.play.SetText("Pause")
-	speed := (to - from) / math.Max(8, math.Min(60, to-from))
 	go func() {
 		tick := time.NewTicker(framePeriod)
 		defer tick.Stop()
@@ -45,9 +66,9 @@ func (p *player) start() {
 					return
 				}
 				from, to := p.f.span()
-				t := p.f.clock + dt*speed
-				if t >= to {
-					t = from
+				t := p.f.clock + dt*p.rate()
+				if to > from && t >= to {
+					t = from + math.Mod(t-from, to-from)
 				}
 				p.f.SetClock(t)
 			})

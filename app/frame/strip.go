@@ -3,6 +3,7 @@ package frame
 import (
 	"fmt"
 	"image/color"
+	"slices"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
@@ -21,6 +22,7 @@ type strip struct {
 	f       *Frame
 	figure  *clockFigure
 	play    *widgets.TipButton
+	speed   *widgets.Select
 	picker  *widgets.Select
 	plot    figures.Plot
 	area    figures.PlotArea
@@ -44,9 +46,22 @@ func newStrip(f *Frame) *strip {
 		}
 	}), "strip.duty")
 	f.player = &player{f: f}
-	side := container.New(&stack{}, s.picker, s.play)
+	side := container.New(&stack{}, s.picker, container.New(playRow{}, s.play, s.newSpeed()))
 	s.content = container.NewBorder(nil, nil, side, nil, s.figure)
 	return s
+}
+
+// newSpeed makes the choice of how fast the clock runs.
+func (s *strip) newSpeed() *widgets.Select {
+	var texts []string
+	for _, k := range speeds {
+		texts = append(texts, speedText(k))
+	}
+	s.speed = widgets.Name(widgets.NewSelect(texts, func(text string) {
+		s.f.player.factor = speeds[slices.Index(texts, text)]
+	}), "strip.speed")
+	s.speed.Selected = texts[0]
+	return s.speed
 }
 
 func (s *strip) toggle() {

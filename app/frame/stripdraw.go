@@ -92,7 +92,7 @@ func drawPhases(p pen.Pen, plot figures.Plot, w, h float64, pal figures.Palette)
 // stack puts the choice of the duty over the play button, close where there is little room.
 type stack struct{}
 
-const stripSide = 111
+const stripSide = 146
 
 // MinSize is that of both, close together.
 func (*stack) MinSize(o []fyne.CanvasObject) fyne.Size {
@@ -111,6 +111,27 @@ func (*stack) Layout(o []fyne.CanvasObject, size fyne.Size) {
 		c.Resize(fyne.NewSize(size.Width-12*k, c.MinSize().Height))
 		y += c.MinSize().Height + gap
 	}
+}
+
+// playRow sets the button and the choice of its speed side by side.
+type playRow struct{}
+
+// playShare is the share of the button.
+const playShare = 0.44
+
+// MinSize is as high as the higher of both.
+func (playRow) MinSize(o []fyne.CanvasObject) fyne.Size {
+	return fyne.NewSize(0, max(o[0].MinSize().Height, o[1].MinSize().Height))
+}
+
+// Layout shares the width.
+func (playRow) Layout(o []fyne.CanvasObject, size fyne.Size) {
+	gap := 3 * widgets.Scale()
+	first := (size.Width - gap) * playShare
+	o[0].Move(fyne.NewPos(0, 0))
+	o[0].Resize(fyne.NewSize(first, size.Height))
+	o[1].Move(fyne.NewPos(first+gap, 0))
+	o[1].Resize(fyne.NewSize(size.Width-first-gap, size.Height))
 }
 
 // atClock writes the time and the values of the tracks at it.

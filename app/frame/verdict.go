@@ -29,7 +29,7 @@ func (f *Frame) newVerdict() *widgets.Figure {
 	return v
 }
 
-// verdictFields takes the fields from the report's decision on the first proposal.
+// verdictFields takes the fields from the report's decision on the proposal picked.
 func (f *Frame) verdictFields() []verdictField {
 	r := f.Report()
 	if r == nil {
@@ -38,7 +38,7 @@ func (f *Frame) verdictFields() []verdictField {
 	if len(r.Decisions) == 0 {
 		return f.aloneFields(r)
 	}
-	d := r.Decisions[f.proposal(r)]
+	d := r.Decisions[0]
 	var out []verdictField
 	row := func(name, title, of string) {
 		for _, x := range d.Rows {
@@ -63,29 +63,16 @@ func (f *Frame) verdictFields() []verdictField {
 	return out
 }
 
-// proposal is the index of the decision shown: the one whose circuit is selected, else the first.
-func (f *Frame) proposal(r *audit.Report) int {
-	if file := f.doc.File(); file != nil && f.circuit > 0 && f.circuit < len(file.Circuits) {
-		for i, d := range r.Decisions {
-			if d.Proposal == file.Circuits[f.circuit].Name {
-				return i
-			}
-		}
-	}
-	return 0
-}
-
-// ofSeveral names the proposal that the verdict is about, where there are several.
+// ofSeveral names the circuit that the verdict is about, where there are several.
 func (f *Frame) ofSeveral() string {
-	r := f.Report()
-	if r == nil || len(r.Decisions) < 2 {
+	if len(f.doc.File().Besides()) < 2 {
 		return ""
 	}
-	return r.Decisions[f.proposal(r)].Proposal
+	return f.Beside()
 }
 
 func (f *Frame) coolerTitle() string {
-	if s := f.solution; s != nil && s.Oil > 0 && s.Air > 0 {
+	if s := f.Solution(); s != nil && s.Oil > 0 && s.Air > 0 {
 		degrees := func(t float64) string { return station.TrimZeros(f.Text(t, units.Temperature, 3)) }
 		return "Cooler at " + degrees(s.Oil) + " / " + degrees(s.Air)
 	}

@@ -30,6 +30,11 @@ type Heat struct {
 	basis   *widget.Label
 	caution *widget.Label
 	hot     *widget.Label
+	curves  *curves
+	section *section
+	warmth  *widgets.FigureTable
+	request *widgets.TipButton
+	missing *widget.Label
 }
 
 // New makes the station.
@@ -51,7 +56,13 @@ func (h *Heat) Help() string {
 		"A click into them sets the clock. The dashed line is the mean of the cycle.\n\n" +
 		"The table gives the mean heat of each duty and of all running hours, and the cooler this asks for at the oil and air temperature beside it: " +
 		"heat divided by the difference of the two. Type another temperature and the figures follow. A click on a figure, or Enter on it, opens its calculation.\n\n" +
-		"Choose a cooler for the hottest duty, not for the mean of the year. Walls of tank and pipes are not credited: they are a reserve."
+		"Choose a cooler for the hottest duty, not for the mean of the year. Walls of tank and pipes are not credited there: they are a reserve.\n\n" +
+		"Oil temperature follows the oil of all circuits over the week that repeats itself, over one day, and after a winter start, with the limits drawn across. The circuits are solved " +
+		"at several oil temperatures, so thick and thin oil change every loss. Three sliders try another cooler, air and tank; the curves follow at once, and the audit changes only with Put into the audit.\n\n" +
+		"Below the curves stand the oil temperature, the cooler needed for the oil wanted, and the check matrix: hot day and worst duty, a fouled cooler, a fan off, a relief valve that takes all the power, " +
+		"and a winter start. A sign says what is passed. Tank, cooler and air takes what this rests on, for all circuits or for one; an empty field has its default, which stands in grey. " +
+		"What fan and loop pump draw is booked with the energy of every circuit.\n\n" +
+		"Cooler request sheet… writes what a maker of coolers asks for, as PDF or, with the ending .csv, as a table. Lines left blank are for whom their note names."
 }
 
 func wrapped(name string) *widget.Label {
@@ -71,15 +82,25 @@ func (h *Heat) build() {
 	h.fault.Importance = widget.DangerImportance
 	h.basis.Importance = widget.LowImportance
 	h.tableOf = container.NewVBox(h.table.Table, h.fault, h.basis)
+	h.curves, h.section = newCurves(h.ctx), newSection(h.ctx)
+	h.warmth = widgets.NewFigureTable(h.ctx.Palette, h.ctx.Explain, h.ctx.Local)
+	widgets.Name(h.warmth.Table, "heat.warmth")
+	h.request = widgets.Name(widgets.NewTipButton("Cooler request sheet…", "what a maker of coolers asks for, a page for each circuit; with the ending .csv as a table", h.saveRequest), "heat.request")
+	h.missing = wrapped("heat.missing")
 	side := container.NewVBox(
 		widgets.Card("Temperatures", container.NewVBox(h.oil.content, h.air.content, h.caution)),
 		widget.NewSeparator(),
 		widgets.Card("Mean heat and the cooler for it", container.NewVBox(h.empty, h.tableOf)),
 		h.hot,
+		widget.NewSeparator(),
+		widgets.Card("Tank, cooler and air", h.section.content),
 	)
 	scroll := container.NewScroll(widgets.Spaced(side))
 	h.table.In(scroll)
-	split := container.NewHSplit(container.NewScroll(widgets.Spaced(h.plot.content)), scroll)
+	wide := container.NewScroll(widgets.Spaced(container.NewVBox(h.plot.content, widget.NewSeparator(), h.curves.content, widget.NewSeparator(),
+		widgets.Card("Oil temperature, cooler needed, checks", container.NewVBox(h.missing, container.NewHBox(h.request), h.warmth.Table)))))
+	h.warmth.In(wide)
+	split := container.NewHSplit(wide, scroll)
 	split.Offset = 0.62
 	h.content = split
 }
@@ -89,10 +110,12 @@ func (h *Heat) Changed(w station.What) {
 	if w.Has(station.Model | station.Settings) {
 		h.oil.show(h.ctx.Doc().File())
 		h.air.show(h.ctx.Doc().File())
+		h.section.show()
 	}
 	if w.Has(station.Solution | station.Selection | station.Settings | station.Model) {
 		h.figures()
 		h.plot.load()
+		h.temperatures(w)
 	}
 	if w.Has(station.Clock) {
 		h.plot.clock()
@@ -137,6 +160,37 @@ func (h *Heat) figures() {
 			h.hot.SetText("▲ " + c.Topic + ": " + h.ctx.Local(c.Text))
 		}
 	}
+}
+
+// temperatures fills what is said of the oil temperature.
+func (h *Heat) temperatures(w station.What) {
+	if w.Has(station.Solution | station.Settings) {
+		h.curves.load()
+	}
+	r := h.ctx.Report()
+	if r == nil || len(r.Warmth) == 0 {
+		h.missing.SetText("Nothing is worked out yet: type the oil in the tank under Tank, cooler and air.")
+		h.missing.Show()
+		h.warmth.Table.Hide()
+		h.request.Disable()
+		return
+	}
+	h.missing.Hide()
+	h.warmth.Table.Show()
+	h.request.Enable()
+	var rows []widgets.FigureRow
+	for _, t := range r.Warmth {
+		rows = append(rows, widgets.FigureRow{Name: t.Title})
+		for _, x := range t.Rows {
+			row := widgets.FigureRow{Name: x.Cells[0]}
+			for i, cell := range x.Cells[1:] {
+				row.Cells = append(row.Cells, audit.Figure{Name: t.Title + ", " + x.Cells[0] + ", " + t.Head[i+1], Text: cell,
+					Calculation: audit.Calculation{Formula: t.Formula, Numbers: x.Cells[0] + ": " + cell, Source: t.Note}})
+			}
+			rows = append(rows, row)
+		}
+	}
+	h.warmth.Set(r.Warmth[0].Head, rows)
 }
 
 // emptyText says what belongs here and how to get it.

@@ -23,6 +23,7 @@ type decision struct {
 	content   fyne.CanvasObject
 	title     *widget.Label
 	verdict   *widget.Label
+	credit    *widget.Label // what of the saving could be had without the proposal
 	warnings  *widget.Label
 	figure    *widgets.Figure
 	bars      figures.Bars
@@ -46,6 +47,7 @@ func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	d.title = widget.NewLabelWithStyle("", fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
 	d.title.Wrapping = fyne.TextWrapWord
 	d.verdict, d.warnings = text(numbered("payback.verdict", i)), text(numbered("payback.warnings", i))
+	d.credit = text(numbered("payback.credit", i))
 	d.warnings.Importance = widget.DangerImportance
 	d.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(300, 60), d.draw), numbered("payback.bars", i))
 	d.figure.Tapped = d.tapped
@@ -57,7 +59,7 @@ func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	d.cost.In(in)
 	d.none = text(numbered("payback.none", i))
 	d.published = text(numbered("payback.published", i))
-	d.content = container.NewVBox(d.title, d.verdict, d.warnings, d.figure, d.table.Table, d.cost.Table, d.none, d.published)
+	d.content = container.NewVBox(d.title, d.verdict, d.credit, d.warnings, d.figure, d.table.Table, d.cost.Table, d.none, d.published)
 	return d
 }
 
@@ -72,6 +74,8 @@ var tableRows = []string{"energy drawn a year", "energy returned a year", "cost 
 func (d *decision) show(r *audit.Decision, c *audit.Comparison) {
 	d.title.SetText(r.Proposal + " in place of " + r.Base)
 	d.verdict.SetText(d.ctx.Local(r.Verdict))
+	d.credit.SetText(d.ctx.Local(d.creditText(r)))
+	setHidden(d.credit, d.credit.Text == "")
 	d.warnings.SetText("")
 	if len(r.Warnings) > 0 {
 		d.warnings.SetText("▲ " + d.ctx.Local(strings.Join(r.Warnings, "\n▲ ")))
@@ -82,6 +86,22 @@ func (d *decision) show(r *audit.Decision, c *audit.Comparison) {
 	d.loadCost(r, c)
 	d.published.SetText(d.ctx.Local(publishedText(r.Published)))
 	setHidden(d.published, d.published.Text == "")
+}
+
+// creditText says what of the saving is the repair of faults and habits, "" before that is known.
+func (d *decision) creditText(r *audit.Decision) string {
+	a, current := d.ctx.Doc().Advice()
+	if !current {
+		return ""
+	}
+	for _, l := range a.Ladders {
+		for _, s := range l.Page(a.System).Splits {
+			if l.Circuit == r.Base && s.Proposal == r.Proposal && len(l.Steps) > 0 {
+				return s.Text + " See Fix first, above."
+			}
+		}
+	}
+	return ""
 }
 
 func publishedText(p audit.Published) string {

@@ -10,6 +10,8 @@ import (
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
+	"barlitre/app/fixfirst"
+	"barlitre/app/sitecheck"
 	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
@@ -28,6 +30,7 @@ type Payback struct {
 	basis   *widget.Label
 	left    *widget.Label
 	scroll  *container.Scroll // of the results
+	pages   *pages
 }
 
 // New makes the station.
@@ -45,7 +48,8 @@ func New(ctx station.Context) station.Station {
 	p.alone.In(p.scroll)
 	split := container.NewHSplit(container.NewScroll(widgets.Spaced(p.inputs.content)), p.scroll)
 	split.Offset = 0.36
-	p.content = split
+	p.pages = newPages(ctx, split, p.saving)
+	p.content = p.pages.content
 	return p
 }
 
@@ -66,19 +70,26 @@ func (p *Payback) Content() fyne.CanvasObject { return p.content }
 
 // Help is the short help.
 func (p *Payback) Help() string {
-	return "Left stand the inputs: what the next kilowatt-hour costs (without standing charges), what it emits, how many hours a year each duty runs, " +
+	return "The station has three pages, chosen at its top.\n\nSaving and payback: left stand the inputs: what the next kilowatt-hour costs (without standing charges), what it emits, how many hours a year each duty runs, " +
 		"and what the retrofit costs at least, likely and at most. Each is written into the audit file with where it comes from.\n\n" +
 		"Right stands what follows: cost a year before and after, the saving, and the simple payback, which is cost divided by the money saved a year, without interest, " +
 		"price changes or upkeep. A click on a figure, or Enter on it, opens its calculation.\n\n" +
-		"The published savings are a check for the reader; they never enter a figure. The list at the end says what is not in the figures."
+		"The published savings are a check for the reader; they never enter a figure. The list at the end says what is not in the figures.\n\n" +
+		fixfirst.Help + "\n\n" + sitecheck.Help
 }
 
-// Changed shows anew what changed.
-func (p *Payback) Changed(w station.What) {
+// Changed shows anew what changed, on the page in sight.
+func (p *Payback) Changed(w station.What) { p.pages.tell(w) }
+
+// saving shows anew what changed of saving and payback.
+func (p *Payback) saving(w station.What) {
 	if w.Has(station.Model | station.Settings) {
 		p.inputs.show()
 	}
 	if w.Has(station.Solution | station.Settings | station.Model) {
+		p.ctx.Doc().Advise(p.ctx.System())
+	}
+	if w.Has(station.Solution | station.Settings | station.Model | station.Advice) {
 		p.figures()
 	}
 }

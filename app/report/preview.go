@@ -48,6 +48,7 @@ type request struct {
 	system  units.System
 	width   float32
 	palette figures.Palette // of the edges
+	advised bool            // with what to put right first and the site check
 }
 
 func newPreview(ctx station.Context, options func() pdf.Options) *preview {
@@ -93,7 +94,8 @@ func (p *preview) turn(by float32) {
 // load lays the report out and draws it, in the background; a later request overtakes it.
 func (p *preview) load() {
 	opt, width := p.options(), widths[p.size]*widgets.Scale()
-	ask := request{p.ctx.Solution(), fmt.Sprint(opt.Without), opt.System, width, p.ctx.Palette()}
+	all, _ := p.ctx.Doc().Solution()
+	ask := request{all, fmt.Sprint(opt.Without, opt.Sheets), opt.System, width, p.ctx.Palette(), len(opt.SiteCheck) > 0}
 	if ask == p.asked && ask.of != nil {
 		p.state()
 		return
@@ -132,9 +134,8 @@ func drawPages(s *audit.Solution, opt pdf.Options, width int) (d drawn) {
 		}
 	}()
 	n := max(1, (leastWidth+width-1)/max(width, 1)) // small pages are drawn larger and made smaller
-	k := float64(n*width) / pdf.PageWidth
-	high := int(float64(width)*pdf.PageHeight/pdf.PageWidth + 0.5)
-	d.starts, d.err = pdf.Pages(s, opt, func() pen.Pen {
+	d.starts, d.err = pdf.Pages(s, opt, func(w, h float64) pen.Pen {
+		k, high := float64(n*width)/w, int(float64(width)*h/w+0.5)
 		if last := len(d.pages) - 1; last >= 0 {
 			d.pages[last] = smaller(d.pages[last], n)
 		}
@@ -192,7 +193,12 @@ func (p *preview) show(d drawn, width float32) {
 	}
 	var objects []fyne.CanvasObject
 	for _, img := range d.pages {
-		objects = append(objects, newSheet(img, fyne.NewSize(width, width*pdf.PageHeight/pdf.PageWidth)))
+		size := img.Rect.Size()
+		page := newSheet(img, fyne.NewSize(width, width*float32(size.Y)/float32(size.X)))
+		if size.X > size.Y { // lying, in the room of one that stands
+			page = container.NewCenter(page)
+		}
+		objects = append(objects, page)
 	}
 	p.pages.Objects = objects
 	p.pages.Refresh()

@@ -5,14 +5,17 @@ package report
 import (
 	"fmt"
 	"strings"
+	"time"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
+	"barlitre/app/document"
 	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
+	"barlitre/audit/figures"
 	"barlitre/audit/pdf"
 )
 
@@ -22,6 +25,8 @@ type Report struct {
 	content  fyne.CanvasObject
 	fields   []textField
 	sections map[pdf.Section]*widgets.Check
+	sheets   *widgets.Check // the circuits on pages of their own
+	settle   *time.Timer    // until the clock has come to rest
 	preview  *preview
 	saver    *saver
 }
@@ -43,6 +48,13 @@ func New(ctx station.Context) station.Station {
 		r.text("Site", "report.site", "site.name", func(f *audit.File) string { return f.Site.Name }),
 		r.text("Author", "report.author", "site.author", func(f *audit.File) string { return f.Site.Author }),
 	)
+	block := container.NewVBox(
+		r.text("Legal owner", "report.owner", "report.owner", func(f *audit.File) string { return f.Issue.Owner }),
+		r.text("Number", "report.number", "report.number", func(f *audit.File) string { return f.Issue.Number }),
+		r.text("Revision", "report.revision", "report.revision", func(f *audit.File) string { return f.Issue.Revision }),
+		r.text("Date", "report.date", "site.date", func(f *audit.File) string { return f.Site.Date }),
+		r.text("Approved by", "report.approved", "report.approved", func(f *audit.File) string { return f.Issue.Approved }),
+	)
 	parts := container.NewVBox()
 	for _, s := range pdf.Sections() {
 		check := widgets.Name(widgets.NewCheck(string(s), nil), "report.section."+slug(string(s)))
@@ -51,11 +63,13 @@ func New(ctx station.Context) station.Station {
 		r.sections[s] = check
 		parts.Add(check)
 	}
+	r.sheets = widgets.Name(widgets.NewCheck(string(pdf.Sheets)+", at the clock", func(bool) { r.preview.load() }), "report.section.circuit-sheets")
+	parts.Add(r.sheets)
 	always := widget.NewLabel("Cautions and limits of use are always printed.")
 	always.Wrapping = fyne.TextWrapWord
 	always.Importance = widget.LowImportance
 	parts.Add(always)
-	left := container.NewScroll(widgets.Spaced(container.NewVBox(widgets.Card("First page", head), widget.NewSeparator(), widgets.Card("Sections", parts))))
+	left := container.NewScroll(widgets.Spaced(container.NewVBox(widgets.Card("First page", head), widget.NewSeparator(), widgets.Card("Title block of the circuit sheets", block), widget.NewSeparator(), widgets.Card("Sections", parts))))
 	side := container.NewBorder(nil, widgets.Spaced(r.saver.content), nil, nil, left)
 	split := container.NewHSplit(side, widgets.Spaced(r.preview.content))
 	split.Offset = 0.32
@@ -96,7 +110,38 @@ func (r *Report) options() pdf.Options {
 			opt.Without = append(opt.Without, s)
 		}
 	}
+	if r.sheets.Checked {
+		v := r.ctx.View()
+		opt.Sheets = &pdf.View{Duty: r.ctx.Duty(), At: r.ctx.Clock(), Cycle: v.Cycle, Hide: v.Hide, Marks: figures.Marks(r.ctx.Doc().Findings())}
+	}
+	if a, current := r.ctx.Doc().Advice(); current && a.System == opt.System {
+		opt = withAdvice(opt, a)
+	}
 	return opt
+}
+
+// withAdvice adds what is to be put right first and what to measure.
+func withAdvice(opt pdf.Options, a *document.Advice) pdf.Options {
+	opt.FixFirst = nil
+	for _, l := range a.Ladders {
+		opt.FixFirst = append(opt.FixFirst, l.Page(a.System))
+	}
+	opt.SiteCheck = a.Plans
+	return opt
+}
+
+// clockRests is how long the clock must rest before sheets are laid out anew.
+const clockRests = 400 * time.Millisecond
+
+// clockMoved lays the sheets out for the new instant once the clock rests.
+func (r *Report) clockMoved() {
+	if !r.sheets.Checked {
+		return
+	}
+	if r.settle != nil {
+		r.settle.Stop()
+	}
+	r.settle = time.AfterFunc(clockRests, func() { fyne.Do(r.preview.load) })
 }
 
 // Name is the word on the rail.
@@ -112,8 +157,11 @@ func (r *Report) Mend() bool { return false }
 func (r *Report) Help() string {
 	return "The pages are drawn as they will print. Leave sections out by their switches; the cautions and limits of use stay in. Title, customer, site and author " +
 		"belong to the audit and are saved with it.\n\n" +
+		"Circuit sheets adds each circuit on a lying page of its own, as it stands on its sheet at the clock, with a frame and a title block of fields of ISO 7200; what they say is typed here. " +
+		"File > Sheets as PDF prints the two circuits that are shown alone, on A4 or A3.\n\n" +
 		"Save PDF… writes the report, with the figures of all circuits as they are now. Save JSON… writes every result as numbers in SI units, for other programs. " +
 		"Save CSV… writes a table of every time step for each circuit and duty into a folder; for that the audit is solved once more, which can be cancelled.\n\n" +
+		"What to put right first and the site check are worked out behind the window and come into the pages when they are ready; a PDF that is saved waits for them.\n\n" +
 		"Files are put in place when they are whole. When something fails, the message says what and where, and the audit stays open as it was."
 }
 
@@ -123,8 +171,13 @@ func (r *Report) Changed(w station.What) {
 		r.show()
 	}
 	if w.Has(station.Solution | station.Settings | station.Model) {
+		r.ctx.Doc().Advise(r.ctx.System())
+	}
+	if w.Has(station.Solution | station.Settings | station.Model | station.Advice) {
 		r.saver.refresh()
 		r.preview.load()
+	} else if w.Has(station.Clock) {
+		r.clockMoved()
 	}
 }
 

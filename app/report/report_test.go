@@ -21,6 +21,7 @@ import (
 	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/audit/pdf"
+	"barlitre/machines/units"
 )
 
 const press, winch = "baling-press.yaml", "quayside-winch.yaml"
@@ -241,7 +242,15 @@ func TestSaveIsOfThePresentAudit(t *testing.T) {
 	}
 	c.Wait()
 	var want bytes.Buffer
-	if err := c.Solution().Result().Write(&want); err != nil {
+	result := c.Solution().Result()
+	advice, err := c.Document.AdviceOn(t.Context(), c.Solution(), units.Metric, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, l := range advice.Ladders {
+		result.FixFirst = append(result.FixFirst, l.Result())
+	}
+	if err := result.Write(&want); err != nil {
 		t.Fatal(err)
 	}
 	if !bytes.Equal(data, want.Bytes()) {

@@ -21,8 +21,7 @@ import (
 	"barlitre/audit/pdf"
 )
 
-// saveDirVariable names the folder that scripts save into, without a dialog.
-const saveDirVariable = "BARLITRE_SAVE_DIR"
+const saveDirVariable = station.SaveDirVariable
 
 // today is the date of the report.
 var today = time.Now
@@ -84,22 +83,39 @@ func (s *saver) base() string {
 
 func (s *saver) savePDF() {
 	opt := s.options()
-	s.saveFile("the report", ".pdf", func(w io.Writer, r *audit.Solution) error { return pdf.Write(w, r, opt) })
+	s.saveFile("the report", ".pdf", func(ctx context.Context, w io.Writer, r *audit.Solution) error {
+		a, err := s.ctx.Doc().AdviceOn(ctx, r, opt.System, s.progress())
+		if err != nil {
+			return err
+		}
+		return pdf.Write(w, r, withAdvice(opt, a))
+	})
 }
 
 func (s *saver) saveJSON() {
-	s.saveFile("the results", ".json", func(w io.Writer, r *audit.Solution) error { return r.Result().Write(w) })
+	system := s.ctx.System()
+	s.saveFile("the results", ".json", func(ctx context.Context, w io.Writer, r *audit.Solution) error {
+		a, err := s.ctx.Doc().AdviceOn(ctx, r, system, s.progress())
+		if err != nil {
+			return err
+		}
+		out := r.Result()
+		for _, l := range a.Ladders {
+			out.FixFirst = append(out.FixFirst, l.Result())
+		}
+		return out.Write(w)
+	})
 }
 
 // saveFile asks for a name and writes one file.
-func (s *saver) saveFile(what, ext string, write func(io.Writer, *audit.Solution) error) {
+func (s *saver) saveFile(what, ext string, write func(context.Context, io.Writer, *audit.Solution) error) {
 	do := func(path string) {
 		s.work(what, path, func(ctx context.Context, progress func(int, int)) error {
 			r, err := s.solution(ctx, progress)
 			if err != nil {
 				return err
 			}
-			return writeFile(path, func(w io.Writer) error { return write(w, r) })
+			return station.WriteWhole(path, func(w io.Writer) error { return write(ctx, w, r) })
 		})
 	}
 	if dir := os.Getenv(saveDirVariable); dir != "" {
@@ -160,7 +176,7 @@ func (s *saver) work(what, where string, do func(ctx context.Context, progress f
 	s.working.Show()
 	s.refresh()
 	s.start(func() {
-		err := guarded(func() error { return do(ctx, s.progress()) })
+		err := station.Guarded(func() error { return do(ctx, s.progress()) })
 		fyne.Do(func() {
 			stop()
 			s.busy = false
@@ -194,14 +210,4 @@ func (s *saver) ended(what, where string, err error) {
 	default:
 		s.ctx.Fail(fmt.Errorf("save %s to %s: %w; nothing was written there, and the audit with its results is still open here", what, where, plain(err)))
 	}
-}
-
-// guarded turns an error of the program itself into one that is said.
-func guarded(do func() error) (err error) {
-	defer func() {
-		if v := recover(); v != nil {
-			err = fmt.Errorf("the program met an error of its own (%v); please report it with this file", v)
-		}
-	}()
-	return do()
 }

@@ -107,24 +107,6 @@ func writeTables(ctx context.Context, f *audit.File, folder, base string, progre
 // partError is of an action of which a part was done.
 type partError struct{ error }
 
-// writeFile writes a file so that it is there whole, or as it was.
-func writeFile(path string, write func(io.Writer) error) (err error) {
-	tmp, err := os.CreateTemp(filepath.Dir(path), ".barlitre-*")
-	if err != nil {
-		return err
-	}
-	defer func() {
-		if err != nil {
-			os.Remove(tmp.Name())
-		}
-	}()
-	err = errors.Join(write(tmp), tmp.Chmod(0o644), tmp.Sync(), tmp.Close())
-	if err != nil {
-		return err
-	}
-	return os.Rename(tmp.Name(), path)
-}
-
 // plain takes names of temporary files out of an error: the sentence around it names the place.
 func plain(err error) error {
 	var at *os.PathError

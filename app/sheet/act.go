@@ -42,6 +42,18 @@ func (s *Station) Act(a station.Action) {
 		e.openRename()
 	case station.AddBlock:
 		e.openShelf()
+	case station.SelectAll:
+		e.selectAll()
+	case station.Group:
+		e.openGroup()
+	case station.AddNote:
+		e.openNote()
+	case station.Connect:
+		e.join.begin(e)
+	case station.Straighten:
+		e.straighten()
+	case station.FitSelection:
+		e.fitSelection()
 	case station.Rotate:
 		e.turn("Rotated ", func(ids []string) error { return s.ctx.Doc().Rotate(e.name, 1, ids...) })
 	case station.Mirror:
@@ -182,8 +194,18 @@ func (e *editor) take(ids []string) {
 // delete takes the selected blocks, or the selected line, off the sheet. The lines on
 // both sides of a block that stands in a line become one where that makes sense.
 func (e *editor) delete() {
-	if e.line >= 0 && len(e.selected) == 0 {
+	switch {
+	case e.line >= 0 && len(e.selected) == 0 && e.piece != nil:
+		e.deleteBranch()
+		return
+	case e.line >= 0 && len(e.selected) == 0:
 		e.deleteLine()
+		return
+	case e.group >= 0 && len(e.selected) == 0:
+		e.deleteGroup()
+		return
+	case len(e.notes) > 0:
+		e.deleteNotes(e.ids())
 		return
 	}
 	ids := e.chosen("delete it")

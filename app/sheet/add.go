@@ -44,16 +44,3 @@ func (e *editor) begin(kind string, at [2]float64) (id string, err error) {
 	})
 	return id, err
 }
-
-// copyAsFound begins the proposal as a copy of the circuit as found.
-func (e *editor) copyAsFound() {
-	from := e.s.editors[0].name
-	const name = "Proposal"
-	if err := e.s.ctx.Doc().CopyCircuit(from, name); err != nil {
-		e.s.refused(err)
-		return
-	}
-	e.s.bringCircuits(false)
-	e.s.ctx.Select(e.circuit, "")
-	e.s.ctx.Say("The proposal begins as a copy of " + from + ". Change it: / adds a block, Del removes one, a drag from port to port connects.")
-}

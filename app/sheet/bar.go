@@ -11,9 +11,9 @@ import (
 
 // bar holds the buttons above the sheets.
 type bar struct {
-	s                           *Station
-	add, fit, wide, heat, panel *widgets.Button
-	content                     *fyne.Container
+	s                                      *Station
+	add, fit, wide, signs, circuits, panel *widgets.Button
+	content                                *fyne.Container
 }
 
 func newBar(s *Station) *bar {
@@ -26,13 +26,15 @@ func newBar(s *Station) *bar {
 	b.add = button("sheet.add", func() { s.Act(station.AddBlock) })
 	b.fit = button("sheet.fit", s.fitAll)
 	b.wide = button("sheet.wide", func() { s.setWide(!s.wide) })
-	b.heat = button("sheet.heat", func() { s.setEnergy(!s.energy) })
+	b.signs = button("sheet.signs", s.openSigns)
+	b.circuits = button("sheet.circuits", s.openCircuits)
 	b.panel = button("sheet.panel", s.togglePanel)
-	b.content = container.New(flow{}, b.add, b.fit, b.wide, b.heat, b.panel)
+	b.content = container.New(flow{}, b.add, b.fit, b.wide, b.signs, b.circuits, b.panel)
 	b.add.SetText("Add block (/)")
 	b.fit.SetText("Fit (F)")
 	b.wide.SetText("Show one sheet (W)")
-	b.heat.SetText("Show heat over the cycle")
+	b.signs.SetText(s.signsText())
+	b.circuits.SetText("Circuits…")
 	b.panel.SetText("Fold properties")
 	return b
 }
@@ -88,7 +90,7 @@ func (b *bar) reload() {
 		}
 	}
 	set(b.wide, pick(b.s.wide, "Show both sheets (W)", "Show one sheet (W)"))
-	set(b.heat, pick(b.s.energy, "Show heat at the clock", "Show heat over the cycle"))
+	set(b.signs, b.s.signsText())
 	set(b.panel, pick(b.s.panelOpen(), "Fold properties", "Show properties"))
 }
 
@@ -99,54 +101,4 @@ func pick(on bool, yes, no string) string {
 		return yes
 	}
 	return no
-}
-
-// pickerWidth leaves room for a name [units at scale 1].
-const pickerWidth = 190
-
-// picker chooses the proposal on the second sheet; it is shown when there are several.
-type picker struct {
-	s       *Station
-	sel     *widgets.Select
-	content *fyne.Container
-	filling bool
-}
-
-func newPicker(s *Station) *picker {
-	p := &picker{s: s}
-	p.sel = widgets.NewSelect(nil, p.chosen)
-	p.content = container.New(widgets.Wide(pickerWidth), p.sel)
-	p.content.Hide()
-	widgets.Name(p.sel, "sheet.proposal")
-	return p
-}
-
-func (p *picker) chosen(name string) {
-	if p.filling {
-		return
-	}
-	p.s.proposal = name
-	for i, c := range p.s.ctx.Doc().File().Circuits {
-		if c.Name == name {
-			p.s.ctx.Select(i, "")
-		}
-	}
-}
-
-func (p *picker) reload() {
-	left, right := p.s.editors[0].circuit, p.s.editors[1].circuit
-	var names []string
-	for i, c := range p.s.ctx.Doc().File().Circuits {
-		if i != left {
-			names = append(names, c.Name)
-		}
-	}
-	show(p.content, len(names) > 1)
-	p.filling = true
-	defer func() { p.filling = false }()
-	p.sel.Options = names
-	if right >= 0 && p.sel.Selected != p.s.editors[1].name {
-		p.sel.SetSelected(p.s.editors[1].name)
-	}
-	p.sel.Refresh()
 }

@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"math"
+	"slices"
 	"strings"
 	"testing"
 	"time"
@@ -33,6 +34,8 @@ type bench struct {
 	duty    int
 	circuit int
 	block   string
+	picked  string
+	view    station.View
 	dark    bool
 	comma   bool
 	system  units.System
@@ -128,10 +131,25 @@ func (b *bench) Selected() (int, string) { return b.circuit, b.block }
 func (b *bench) Select(circuit int, block string) {
 	if circuit != b.circuit || block != b.block {
 		b.circuit, b.block = circuit, block
+		if f := b.doc.File(); circuit >= 0 && circuit < len(f.Circuits) && slices.Contains(f.Besides(), f.Circuits[circuit].Name) {
+			b.picked = f.Circuits[circuit].Name
+		}
 		b.s.Changed(station.Selection)
 	}
 }
-func (b *bench) Solution() *audit.Solution { s, _ := b.doc.Solution(); return s }
+func (b *bench) Beside() string {
+	names := b.doc.File().Besides()
+	if len(names) > 0 && !slices.Contains(names, b.picked) {
+		return names[0]
+	}
+	return b.picked
+}
+func (b *bench) View() *station.View { return &b.view }
+func (b *bench) Pick(circuit string) {
+	b.picked, b.circuit, b.block = circuit, -1, ""
+	b.s.Changed(station.Solution | station.Selection)
+}
+func (b *bench) Solution() *audit.Solution { s, _ := b.doc.Solution(); return s.Beside(b.Beside()) }
 func (b *bench) Report() *audit.Report {
 	if s := b.Solution(); s != nil {
 		return s.Report(b.system)

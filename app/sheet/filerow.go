@@ -37,7 +37,7 @@ func newFileRow(p *panel, circuitName, block string, q *circuit.Param, target st
 		return word, q.Text, "name of a file beside the audit", ""
 	}
 	r.choose = widgets.Name(newLink("choose", r.ask), "field."+q.Key+".choose")
-	r.drop = widgets.Name(newLink("drop", func() { r.handed(p.s.ctx.Doc().Drop(target)) }), "field."+q.Key+".drop")
+	r.drop = widgets.Name(newLink("drop", func() { r.handed(p.drop(target)) }), "field."+q.Key+".drop")
 	r.head.Add(r.choose)
 	r.head.Add(r.drop)
 	r.stack(r.field)
@@ -48,12 +48,12 @@ func newFileRow(p *panel, circuitName, block string, q *circuit.Param, target st
 func (r *fileRow) take(name string) error {
 	doc := r.p.s.ctx.Doc()
 	if name == "" {
-		return doc.Drop(r.target)
+		return r.p.drop(r.target)
 	}
 	if doc.Path() == "" {
 		return fmt.Errorf("save the audit first (File > Save): %s must lie beside its file", name)
 	}
-	return doc.Set(r.target, name)
+	return r.p.set(r.target, name)
 }
 
 // handed shows what became of a name that was not typed.

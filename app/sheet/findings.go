@@ -5,6 +5,8 @@ import (
 	"image/color"
 	"math"
 	"slices"
+	"strconv"
+	"strings"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
@@ -12,6 +14,7 @@ import (
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
+	"barlitre/audit/cure"
 	"barlitre/audit/figures"
 	"barlitre/audit/pen"
 	"barlitre/circuit"
@@ -24,7 +27,8 @@ type findings struct {
 	widget.BaseWidget
 	s       *Station
 	list    []circuit.Finding
-	at      int // where the keys are
+	cures   []*cure.Cure // of list, nil where there is none
+	at      int          // where the keys are
 	focused bool
 	paper   *canvas.Rectangle
 	head    *widgets.Figure
@@ -50,8 +54,13 @@ func newFindings(s *Station) *findings {
 	f.ring.Hide()
 	f.figure = widgets.NewFigure(fyne.NewSize(100, 20), f.draw)
 	f.figure.Tapped = func(p widgets.Part, _, _ float64) {
-		var i int
-		if _, err := fmt.Sscanf(p.Name, "%d", &i); err == nil {
+		number, isCure := strings.CutSuffix(p.Name, cureSuffix)
+		i, err := strconv.Atoi(number)
+		switch {
+		case err != nil:
+		case isCure:
+			f.mend(i)
+		default:
 			f.open(i)
 		}
 	}
@@ -70,7 +79,10 @@ func (f *findings) reload() {
 	if solving, _, _ := doc.Solving(); !solving || len(f.list) == 0 {
 		list := doc.Findings()
 		slices.SortStableFunc(list, func(a, b circuit.Finding) int { return slices.Index(ranks, a.Level) - slices.Index(ranks, b.Level) })
-		f.list = list
+		f.list, f.cures = list, nil
+		for _, g := range list {
+			f.cures = append(f.cures, doc.Cure(g))
+		}
 	}
 	f.at = min(f.at, max(0, len(f.list)-1))
 	f.measure()
@@ -78,19 +90,11 @@ func (f *findings) reload() {
 	f.figure.Refresh()
 }
 
-// marks are the worst levels by block of a circuit. Notes and cautions are in the
-// list only: nearly every block has one.
-func (f *findings) marks(name string) map[string]circuit.Level {
-	out := map[string]circuit.Level{}
-	for _, g := range f.list {
-		if g.Circuit != name || g.Block == "" || g.Level == circuit.Note || g.Level == circuit.Caution {
-			continue
-		}
-		if _, marked := out[g.Block]; !marked { // the list begins with the worst
-			out[g.Block] = g.Level
-		}
-	}
-	return out
+// of is the place in the list of the worst finding marked at a block, −1 for none.
+func (f *findings) of(circuitName, block string) int {
+	return slices.IndexFunc(f.list, func(g circuit.Finding) bool {
+		return g.Circuit == circuitName && g.Block == block && g.Marked()
+	})
 }
 
 // Sizes of the list.
@@ -139,16 +143,16 @@ func wrap(text string, size, width float64) []string {
 // measure makes the list as high as its texts.
 func (f *findings) measure() {
 	h := 4.0
-	for _, g := range f.list {
-		h += f.height(g)
+	for i := range f.list {
+		h += f.height(i)
 	}
 	f.figure.SetMin(fyne.NewSize(100, float32(math.Max(40, h))))
 	f.Refresh()
 	f.scroll.Refresh()
 }
 
-func (f *findings) height(g circuit.Finding) float64 {
-	return 16 + findLine*float64(len(f.lines(g))) + findGap
+func (f *findings) height(i int) float64 {
+	return 16 + findLine*float64(len(f.lines(f.list[i]))) + f.cureRoom(i) + findGap
 }
 
 func (f *findings) drawHead(p pen.Pen, w, _ float64) []widgets.Part {
@@ -177,7 +181,7 @@ func (f *findings) draw(p pen.Pen, w, _ float64) []widgets.Part {
 	name := f.s.editors[f.s.active].name
 	y := 4.0
 	for i, g := range f.list {
-		h := f.height(g)
+		h := f.height(i)
 		own := block != "" && g.Block == block && g.Circuit == name
 		if f.focused && i == f.at {
 			pen.RoundRect(p, 2, y-2, w-8, h-3, 4, color.NRGBA{}, pen.Stroke{W: 1.5, C: pal.Gain})
@@ -189,10 +193,14 @@ func (f *findings) draw(p pen.Pen, w, _ float64) []widgets.Part {
 		}
 		levelMark(p, 11, y+8, g.Level, pal)
 		p.Text(pen.Pt{X: findLeft, Y: y + 12}, pen.Shorten(f.where(g), 11, true, w-findLeft-findRight), 11, pal.Ink, pen.Left, true)
-		for k, l := range f.lines(g) {
+		lines := f.lines(g)
+		for k, l := range lines {
 			p.Text(pen.Pt{X: findLeft, Y: y + 12 + findLine*float64(k+1)}, l, 11.5, pal.Ink, pen.Left, false)
 		}
 		f.places = append(f.places, widgets.Part{Name: fmt.Sprint(i), Text: f.where(g) + ": " + g.Text, Y: y - 2, W: w, H: h, Click: true})
+		if c := f.cures[i]; c != nil {
+			f.places = append(f.places, f.drawCure(p, fmt.Sprint(i), c, y+14+findLine*float64(len(lines)), w))
+		}
 		y += h
 	}
 	return f.places
@@ -272,8 +280,12 @@ func (f *findings) AcceptsTab() bool { return false }
 func (f *findings) FocusGained() { f.focused = true; f.figure.Refresh() }
 func (f *findings) FocusLost()   { f.focused = false; f.figure.Refresh() }
 
-// TypedRune takes nothing.
-func (f *findings) TypedRune(rune) {}
+// TypedRune mends the finding at hand with M.
+func (f *findings) TypedRune(r rune) {
+	if r == 'm' || r == 'M' {
+		f.mend(f.at)
+	}
+}
 
 // TypedKey goes through the list and opens a finding.
 func (f *findings) TypedKey(k *fyne.KeyEvent) {
@@ -289,12 +301,30 @@ func (f *findings) TypedKey(k *fyne.KeyEvent) {
 		widgets.PassKey(f, k)
 		return
 	}
-	y := 0.0
-	for _, g := range f.list[:max(0, f.at)] {
-		y += f.height(g)
+	f.scrollTo(f.at)
+}
+
+// follow brings the finding that is marked at the selected block to the top, unless the
+// finding at hand is about that block already.
+func (f *findings) follow() {
+	_, block := f.s.ctx.Selected()
+	name := f.s.editors[f.s.active].name
+	if f.at < len(f.list) && f.list[f.at].Block == block && f.list[f.at].Circuit == name {
+		return
 	}
-	f.scroll.Offset.Y = float32(y) * widgets.Scale()
-	f.scroll.Refresh()
+	if i := f.of(name, block); block != "" && i >= 0 {
+		f.at = i
+		f.scrollTo(i)
+	}
+}
+
+// scrollTo brings a finding to the top of the list.
+func (f *findings) scrollTo(i int) {
+	y := 0.0
+	for k := range f.list[:max(0, i)] {
+		y += f.height(k)
+	}
+	f.scroll.ScrollToOffset(fyne.NewPos(0, float32(y)*widgets.Scale()))
 	f.figure.Refresh()
 }
 

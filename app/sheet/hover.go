@@ -1,33 +1,47 @@
 package sheet
 
 import (
-	"math"
 	"strings"
+	"unicode/utf8"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
 
 	"barlitre/app/widgets"
 	"barlitre/audit/figures"
-	"barlitre/circuit"
-	"barlitre/machines/units"
 )
 
-// hover is the small label at the pointer, the frame round the block under it, and
-// the ghosts of dragged blocks.
+// hover is the small label at the pointer.
 type hover struct {
-	e      *editor
-	block  string
-	net    int
-	port   *figures.SheetPort // under the pointer, before block and line
-	on     bool
-	at     fyne.Position
-	paper  *canvas.Rectangle
-	lines  []*canvas.Text
-	ghosts []*canvas.Rectangle
+	e     *editor
+	block string
+	net   int
+	port  *figures.SheetPort // under the pointer, before block and line
+	on    bool
+	told  []string // instead of what lies under the pointer
+	at    fyne.Position
+	paper *canvas.Rectangle
+	lines []*canvas.Text
 }
 
-const hoverLines = 6
+const (
+	hoverLines  = 10
+	hoverWidest = 52 // letters of a row, where words can be broken
+)
+
+// wrapped breaks a text between words into rows of so many letters.
+func wrapped(text string, letters int) []string {
+	var out []string
+	row := ""
+	for _, word := range strings.Fields(text) {
+		if row != "" && utf8.RuneCountInString(row)+1+utf8.RuneCountInString(word) > letters {
+			out, row = append(out, row), word
+			continue
+		}
+		row = strings.TrimSpace(row + " " + word)
+	}
+	return append(out, row)
+}
 
 func (h *hover) build(e *editor) {
 	h.e, h.net = e, -1
@@ -48,9 +62,6 @@ func (h *hover) recolour() {
 	for i, t := range h.lines {
 		t.Color, t.TextSize, t.TextStyle.Bold = pal.Ink, 11*k, i == 0
 	}
-	for _, g := range h.ghosts {
-		g.StrokeColor, g.StrokeWidth = pal.Gain, 1.5
-	}
 }
 
 // moveTo reads what lies at a place.
@@ -62,12 +73,23 @@ func (h *hover) moveTo(p fyne.Position) {
 		return
 	}
 	h.at = p
-	if !h.on || block != h.block || net != h.net || port != h.port {
-		h.on, h.block, h.net, h.port = true, block, net, port
+	if !h.on || h.told != nil || block != h.block || net != h.net || port != h.port {
+		h.on, h.block, h.net, h.port, h.told = true, block, net, port, nil
 		h.e.wire.ring(0, port)
 		h.e.wire.mark(block)
 		h.fill()
 	}
+	h.place()
+}
+
+// tell shows other words at a place.
+func (h *hover) tell(p fyne.Position, text ...string) {
+	var rows []string
+	for _, t := range text {
+		rows = append(rows, wrapped(t, hoverWidest)...)
+	}
+	h.on, h.block, h.net, h.port, h.told, h.at = true, "", -1, nil, rows, p
+	h.fill()
 	h.place()
 }
 
@@ -81,7 +103,9 @@ func (h *hover) stale() {
 // fill writes the label.
 func (h *hover) fill() {
 	var text []string
-	if h.port != nil {
+	if h.told != nil {
+		text = h.told
+	} else if h.port != nil {
 		text = h.e.portLines(h.port.PortRef)
 	} else if h.block != "" {
 		text = h.e.blockLines(h.block)
@@ -144,7 +168,7 @@ func (h *hover) hide() {
 	if !h.on {
 		return
 	}
-	h.on, h.block, h.net, h.port = false, "", -1, nil
+	h.on, h.block, h.net, h.port, h.told = false, "", -1, nil, nil
 	h.e.wire.hide()
 	h.paper.Hide()
 	for _, t := range h.lines {
@@ -162,122 +186,4 @@ func (h *hover) text() string {
 		}
 	}
 	return strings.Join(out, "\n")
-}
-
-// ghost shows where dragged blocks are, while the lines wait.
-func (h *hover) ghost(ids []string, dx, dy float64) {
-	h.clearGhosts()
-	e := h.e
-	for _, b := range e.boxes {
-		for _, id := range ids {
-			if b.id != id {
-				continue
-			}
-			g := canvas.NewRectangle(nil)
-			g.StrokeColor, g.StrokeWidth = e.s.ctx.Palette().Gain, 1.5
-			g.Move(fyne.NewPos(float32(e.x+(b.x+dx)*e.zoom), float32(e.y+(b.y+dy)*e.zoom)))
-			g.Resize(fyne.NewSize(float32(b.w*e.zoom), float32(b.h*e.zoom)))
-			h.ghosts = append(h.ghosts, g)
-			e.over.Add(g)
-		}
-	}
-}
-
-func (h *hover) clearGhosts() {
-	for _, g := range h.ghosts {
-		h.e.over.Remove(g)
-	}
-	h.ghosts = nil
-}
-
-// blockLines tells of a block under the pointer.
-func (e *editor) blockLines(id string) []string {
-	b := e.drawn.Block(id)
-	if b == nil {
-		return nil
-	}
-	out := []string{id}
-	if k := circuit.KindNamed(b.Kind); k != nil {
-		out[0] += " · " + lower(k.Title)
-	}
-	if t := e.heatText(id); t != "" {
-		out = append(out, t)
-	}
-	return out
-}
-
-// heatText is the heat of a block at the clock or over the cycle, "" for none.
-func (e *editor) heatText(id string) string {
-	v := e.state.Heat(id)
-	switch {
-	case v == 0:
-		return ""
-	case e.state.Energy:
-		return "turns " + e.s.ctx.Text(v, units.Energy, 3) + " a cycle to heat"
-	}
-	return "turns " + e.s.ctx.Text(v, units.Power, 3) + " to heat"
-}
-
-// blockText is what scripts read of a block.
-func (e *editor) blockText(id string) string {
-	text := strings.Join(e.blockLines(id), ", ")
-	if e.selected[id] {
-		text += ", selected"
-	}
-	return text
-}
-
-// lineLines tells of a line under the pointer: its pressure, and flow and power at
-// each end that has a flow, the largest first seen on top.
-func (e *editor) lineLines(net int) []string {
-	ports := e.sheet.Net(net)
-	if len(ports) == 0 {
-		return nil
-	}
-	var names, flows []string
-	pressure, known := 0.0, false
-	for _, p := range ports {
-		names = append(names, p.String())
-		if v, ok := e.state.Signal(p.String() + ".p"); ok && !known {
-			pressure, known = v, true
-		}
-	}
-	for _, p := range ports {
-		q, ok := e.state.Signal(p.String() + ".q")
-		if !ok || math.Abs(q) < 1e-3*e.opt.Scales.Flow {
-			continue
-		}
-		way := "into "
-		if q < 0 {
-			way = "out of "
-		}
-		line := way + p.Block + ": " + e.s.ctx.Text(math.Abs(q), units.Flow, 3)
-		if known {
-			line += ", " + e.s.ctx.Text(math.Abs(q*pressure), units.Power, 3)
-		}
-		flows = append(flows, line)
-	}
-	out := []string{strings.Join(names, " – ")}
-	if known {
-		out[0] = e.s.ctx.Text(pressure, units.Pressure, 3)
-	} else {
-		out = append(out, e.shaftLines(ports)...)
-	}
-	return append(out, flows...)
-}
-
-// shaftLines tells speed and power of a shaft or an electric line.
-func (e *editor) shaftLines(ports []circuit.PortRef) []string {
-	var out []string
-	for _, p := range ports {
-		if w, ok := e.state.Signal(p.Block + ".w"); ok {
-			out = append(out, p.Block+": "+e.s.ctx.Text(w, units.AngularSpeed, 3))
-		}
-		for _, what := range []string{"shaft", "electric"} {
-			if v, ok := e.state.Signal(p.Block + "." + what); ok && (what == "shaft") == (p.Port == "shaft") {
-				out = append(out, p.Block+": "+e.s.ctx.Text(v, units.Power, 3))
-			}
-		}
-	}
-	return out
 }

@@ -1,7 +1,9 @@
 package sheet
 
 import (
+	"math"
 	"sort"
+	"unicode"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
@@ -9,6 +11,7 @@ import (
 
 	"barlitre/app/station"
 	"barlitre/app/widgets"
+	"barlitre/audit/figures"
 )
 
 var (
@@ -70,23 +73,31 @@ func (e *editor) held(k fyne.KeyName, down bool) {
 // TypedRune takes the letters.
 func (e *editor) TypedRune(r rune) {
 	e.showRing()
-	switch r {
-	case 'f', 'F', '0':
+	e.s.active = e.index
+	switch unicode.ToLower(r) {
+	case 'f', '0':
 		e.s.fitAll()
-	case 'w', 'W':
-		e.s.active = e.index
+	case 'w':
 		e.s.setWide(!e.s.wide)
-	case '/':
-		e.act(station.AddBlock)
-	case 'r', 'R':
-		e.act(station.Rotate)
-	case 'm', 'M':
-		e.act(station.Mirror)
 	case '+':
 		e.zoomMiddle(zoomStep)
 	case '-':
 		e.zoomMiddle(1 / zoomStep)
+	case 'l':
+		e.nextLine()
+	case 'b':
+		e.nextPiece()
+	default:
+		if a, ok := letters[unicode.ToLower(r)]; ok {
+			e.act(a)
+		}
 	}
+}
+
+// letters are the keys of what the Edit menu has too.
+var letters = map[rune]station.Action{
+	'/': station.AddBlock, 'r': station.Rotate, 'm': station.Mirror, 'n': station.AddNote,
+	'c': station.Connect, 's': station.Straighten, 'z': station.FitSelection,
 }
 
 // act does on this sheet what the Edit menu does on the one at hand.
@@ -103,11 +114,14 @@ func (e *editor) zoomMiddle(factor float64) {
 // TypedKey takes the keys without a letter.
 func (e *editor) TypedKey(k *fyne.KeyEvent) {
 	e.showRing()
+	if e.join.key(k.Name) {
+		return
+	}
 	switch k.Name {
 	case fyne.KeyEscape:
 		switch {
 		case e.cancel():
-		case len(e.selected) > 0 || e.line >= 0:
+		case !e.nothing():
 			e.choose("", false)
 		default:
 			widgets.PassKey(e, k)
@@ -117,46 +131,103 @@ func (e *editor) TypedKey(k *fyne.KeyEvent) {
 	case fyne.KeyDelete, fyne.KeyBackspace:
 		e.act(station.Delete)
 	case fyne.KeyTab:
-		e.nextBlock()
+		e.nextStop()
 	case fyne.KeyReturn, fyne.KeyEnter:
+		if len(e.selected) == 0 && (len(e.notes) == 1 || e.group >= 0) {
+			e.act(station.Rename)
+			return
+		}
 		e.s.panel.focusFirst()
-	case fyne.KeyLeft:
-		e.arrow(-1, 0)
-	case fyne.KeyRight:
-		e.arrow(1, 0)
-	case fyne.KeyUp:
-		e.arrow(0, -1)
-	case fyne.KeyDown:
-		e.arrow(0, 1)
+	case fyne.KeyHome:
+		e.s.fitAll()
 	default:
+		if way, ok := ways[k.Name]; ok {
+			e.arrow(way[0], way[1])
+			return
+		}
 		widgets.PassKey(e, k)
 	}
 }
 
-// arrow moves the selection, or without one the view.
+// ways are the directions of the keys that move the selection, or the view; a page is as
+// far as the sheet is high.
+var ways = map[fyne.KeyName][2]float64{
+	fyne.KeyLeft: {-1, 0}, fyne.KeyRight: {1, 0}, fyne.KeyUp: {0, -1}, fyne.KeyDown: {0, 1},
+	fyne.KeyPageUp: {0, -page}, fyne.KeyPageDown: {0, page},
+}
+
+// page marks a way that always moves the view.
+const page = 1000
+
+// arrow moves the selection or the chosen piece of a line, or without one the view.
 func (e *editor) arrow(dx, dy float64) {
-	if e.gesture.kind == dragging {
+	if e.gesture.kind == dragging || e.gesture.kind == bending {
 		return
 	}
-	if len(e.selected) == 0 {
-		e.panBy(-dx*panStep, -dy*panStep)
+	_, h := e.room()
+	if math.Abs(dy) == page {
+		e.panBy(0, -dy/page*0.8*h)
 		return
 	}
 	step := nudge
 	if e.keys.shift {
 		step = nudgeMore
 	}
-	e.s.move(e, e.ids(), dx*step, dy*step)
+	e.s.bringCircuits(false) // a step may have come that the sheet does not show yet
+	ids, notes := e.movable()
+	switch {
+	case len(ids)+len(notes) > 0:
+		e.fitted = false
+		e.s.move(e, ids, notes, dx*step, dy*step)
+	case e.piece != nil && e.level(*e.piece) == (dy != 0):
+		e.bend((dx + dy) * step)
+	case e.piece != nil:
+		e.s.ctx.Say("This piece runs that way; move it across, or choose another piece with B.")
+	default:
+		e.panBy(-dx*panStep, -dy*panStep)
+	}
 }
 
-// nextBlock selects the next block in the order of reading, with Shift the one
-// before; after the last one the focus goes on to what follows the sheet.
-func (e *editor) nextBlock() {
-	order := e.order()
+// stop is what Tab goes to: a block, else a note or a group.
+type stop struct {
+	block string
+	mark  figures.SheetMark
+}
+
+// stops are the blocks in the order of reading, then notes and groups.
+func (e *editor) stops() []stop {
+	var out []stop
+	for _, id := range e.order() {
+		out = append(out, stop{block: id})
+	}
+	for i := 0; e.drawn != nil && i < len(e.drawn.Notes); i++ {
+		out = append(out, stop{mark: figures.SheetMark{Note: i, Group: -1}})
+	}
+	for i := 0; e.drawn != nil && i < len(e.drawn.Groups); i++ {
+		out = append(out, stop{mark: figures.SheetMark{Note: -1, Group: i}})
+	}
+	return out
+}
+
+// isAt tells whether a stop is what is selected.
+func (e *editor) isAt(s stop, block string) bool {
+	switch {
+	case s.block != "":
+		return e.selected[s.block] && (block == "" || s.block == block || !e.selected[block])
+	case s.mark.Note >= 0:
+		return e.notes[s.mark.Note]
+	}
+	return e.group == s.mark.Group
+}
+
+// nextStop selects the next block in the order of reading, note or group, with Shift the
+// one before; after the last one the focus goes on to what follows the sheet.
+func (e *editor) nextStop() {
+	list := e.stops()
 	at := -1
 	_, block := e.s.ctx.Selected()
-	for i, id := range order {
-		if e.selected[id] && (block == "" || id == block || !e.selected[block]) {
+	for i, s := range list {
+		if e.isAt(s, block) {
 			at = i
 			break
 		}
@@ -167,8 +238,12 @@ func (e *editor) nextBlock() {
 			next = -1
 		}
 	}
-	if next >= 0 && next < len(order) {
-		e.choose(order[next], false)
+	if next >= 0 && next < len(list) {
+		if s := list[next]; s.block != "" {
+			e.choose(s.block, false)
+		} else {
+			e.chooseMark(s.mark, false)
+		}
 		e.reveal()
 		return
 	}

@@ -13,7 +13,6 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/widget"
 
-	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/circuit"
@@ -121,18 +120,22 @@ func (b *bench) drawn() {
 	}
 }
 
-// tall shows the whole panel of a block, to be looked at.
+// tall shows the whole panel of a block and draws it: to memory, and where pictures are
+// asked for to be looked at. No row may be left without room.
 func (b *bench) tall(circuit int, block, name string) {
 	b.Select(circuit, block)
-	if !stationtest.Looking() {
-		return
-	}
 	for range 3 {
 		b.win.Resize(fyne.NewSize(1201*widgets.Scale(), b.s.panel.list.MinSize().Height/panelShare+400*widgets.Scale()))
 		b.win.Resize(fyne.NewSize(1200*widgets.Scale(), b.s.panel.list.MinSize().Height/panelShare+400*widgets.Scale()))
 	}
 	b.drawn()
 	b.picture(name)
+	list := b.s.panel.list
+	for _, r := range b.s.panel.rows {
+		if o := r.object(); o.Size().Height < o.MinSize().Height-1 || o.Position().Y+o.Size().Height > list.Size().Height+1 {
+			b.t.Errorf("%s: a row at %g is %g high, needs %g, in a list %g high", block, o.Position().Y, o.Size().Height, o.MinSize().Height, list.Size().Height)
+		}
+	}
 }
 
 // filled checks that every row of a block has a title, and a value, a default or a hint; that the block has its year

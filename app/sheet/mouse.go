@@ -2,7 +2,6 @@ package sheet
 
 import (
 	"math"
-	"time"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/driver/desktop"
@@ -16,12 +15,13 @@ type gesture struct {
 	from    fyne.Position      // where the button went down
 	block   string             // under it
 	net     int                // a line under it, −1 for none
+	mark    *figures.SheetMark // a note or group under it, nil for none
 	moved   bool               // a drag has begun
 	port    *figures.SheetPort // under it, nil for none
 	at      fyne.Position      // where a line is dragged to
 	ids     []string           // blocks that are dragged
+	notes   []int              // and notes
 	dx, dy  float64            // by how much [M], whole
-	laid    time.Duration      // what laying the lines anew took last
 	shifted bool               // Shift was held
 }
 
@@ -33,13 +33,10 @@ const (
 	panning               // the picture moves
 	banding               // a box selects
 	dragging              // blocks move
-	wiring                // a line is drawn from a port
+	wiring                // a line is drawn from a port or from a line
+	bending               // a piece of a line is moved sideways
 	cancelled             // by Escape; the rest of the drag does nothing
 )
-
-// slowLay is how long laying the lines may take while a block follows the pointer;
-// above it they are laid when the button is released.
-const slowLay = 40 * time.Millisecond
 
 var (
 	_ desktop.Mouseable  = (*editor)(nil)
@@ -56,6 +53,7 @@ func (e *editor) MouseDown(ev *desktop.MouseEvent) {
 	e.pointer, e.inside = ev.Position, true
 	e.hover.hide()
 	e.wire.hide()
+	e.join.end()
 	e.gesture = gesture{kind: pressed, net: -1, from: ev.Position, shifted: ev.Modifier&fyne.KeyModifierShift != 0}
 	switch {
 	case ev.Button == desktop.MouseButtonTertiary || e.keys.space:
@@ -63,9 +61,20 @@ func (e *editor) MouseDown(ev *desktop.MouseEvent) {
 	case ev.Button != desktop.MouseButtonPrimary || e.sheet == nil:
 		e.gesture.kind = idle
 	default:
-		e.gesture.block, e.gesture.net, _ = e.hit(ev.Position)
-		if port := e.portAt(ev.Position); port != nil && !e.gesture.shifted {
-			e.gesture.port = port
+		e.press(ev.Position)
+	}
+}
+
+// press notes what lies under the pressed button.
+func (e *editor) press(p fyne.Position) {
+	g := &e.gesture
+	g.block, g.net, _ = e.hit(p)
+	if port := e.portAt(p); port != nil && !g.shifted {
+		g.port = port
+	}
+	if x, y := e.at(p); g.block == "" && g.port == nil && g.net < 0 {
+		if m, ok := e.sheet.MarkAt(x, y); ok {
+			g.mark = &m
 		}
 	}
 }
@@ -96,26 +105,43 @@ func (e *editor) Dragged(ev *fyne.DragEvent) {
 		e.dragTo(ev.Position)
 	case wiring:
 		e.wireTo(ev.Position)
+	case bending:
+		e.bendTo(ev.Position)
 	}
 }
 
 // beginDrag decides what a drag with the first button is: on a port it draws a line, on
-// a block it moves the selection, on the ground it selects with a box.
+// a block, a note or the label of a group it moves the selection, on a line it pulls a
+// branch or, once the line is selected, bends it; on the ground it selects with a box.
 func (e *editor) beginDrag() {
 	g := &e.gesture
-	if g.port != nil {
+	switch {
+	case g.port != nil:
 		g.kind = wiring
-		return
-	}
-	if g.block == "" {
+	case g.block != "":
+		g.kind = dragging
+		if !e.selected[g.block] {
+			e.choose(g.block, g.shifted)
+		}
+	case g.mark != nil:
+		g.kind = dragging
+		if !e.notes[g.mark.Note] && (g.mark.Group < 0 || e.group != g.mark.Group) {
+			e.chooseMark(*g.mark, g.shifted)
+		}
+	case g.net >= 0 && g.net == e.line && !g.shifted:
+		g.kind = bending
+		x, y := e.at(g.from)
+		if p, ok := e.sheet.PieceAt(g.net, x, y); ok {
+			e.selectPiece(p)
+		}
+	case g.net >= 0 && !g.shifted:
+		g.kind = wiring
+	default:
 		g.kind = banding
-		return
 	}
-	g.kind = dragging
-	if !e.selected[g.block] {
-		e.choose(g.block, g.shifted)
+	if g.kind == dragging {
+		g.ids, g.notes = e.movable()
 	}
-	g.ids = e.ids()
 }
 
 // MouseUp ends a gesture that was no drag: a click.
@@ -133,28 +159,40 @@ func (e *editor) MouseUp(*desktop.MouseEvent) {
 		e.choose(g.block, g.shifted)
 	case g.port != nil && g.net < 0:
 		e.choose(g.port.Block, false)
+	case g.mark != nil:
+		e.clickMark(*g.mark, g.shifted)
 	case !g.shifted:
-		e.choose("", false)
-		e.selectLine(g.net)
-		if g.net >= 0 {
-			e.s.ctx.Say("Line " + e.lineName(g.net) + ": Del removes it.")
-			e.redraw()
-		}
+		e.clickLine(g.net, g.from)
 	}
+}
+
+// clickLine selects a line, or with a further click the branch of it under the pointer;
+// −1 selects nothing.
+func (e *editor) clickLine(net int, at fyne.Position) {
+	again := net >= 0 && net == e.line
+	e.choose("", false)
+	e.selectLine(net)
+	x, y := e.at(at)
+	if p, ok := e.sheet.PieceAt(net, x, y); ok && again {
+		e.selectPiece(p)
+	}
+	e.sayLine()
+	e.redraw()
 }
 
 // DragEnd ends a drag, also one that left the widget.
 func (e *editor) DragEnd() {
 	g := e.gesture
 	e.gesture = gesture{}
-	e.hover.clearGhosts()
 	switch g.kind {
 	case banding:
 		e.endBand(g)
 	case dragging:
-		e.s.move(e, g.ids, g.dx, g.dy)
+		e.endDrag(g)
 	case wiring:
 		e.endWire(g)
+	case bending:
+		e.endBend(g)
 	}
 }
 
@@ -166,98 +204,35 @@ func (e *editor) cancel() bool {
 	}
 	e.gesture = gesture{kind: cancelled, moved: e.gesture.moved}
 	e.moved = nil
-	e.hover.clearGhosts()
+	e.lift.end()
 	e.wire.hide()
 	e.band.Hide()
 	e.redraw()
 	return true
 }
 
-// dragTo moves the picture of the dragged blocks by whole modules; the lines follow
-// as long as that is quick.
-func (e *editor) dragTo(p fyne.Position) {
-	g := &e.gesture
-	dx := math.Round(float64(p.X-g.from.X) / e.zoom)
-	dy := math.Round(float64(p.Y-g.from.Y) / e.zoom)
-	if dx == g.dx && dy == g.dy {
-		return
-	}
-	g.dx, g.dy = dx, dy
-	if g.laid > slowLay {
-		e.hover.ghost(g.ids, dx, dy)
-		return
-	}
-	began := time.Now()
-	e.moved = e.sheet.MoveAll(g.ids, dx, dy)
-	g.laid = time.Since(began)
-	e.redraw()
-}
-
-// drawBand shows the selecting box.
-func (e *editor) drawBand(p fyne.Position) {
-	a, b := e.gesture.from, p
-	e.band.Move(fyne.NewPos(min(a.X, b.X), min(a.Y, b.Y)))
-	e.band.Resize(fyne.NewSize(max(a.X, b.X)-min(a.X, b.X), max(a.Y, b.Y)-min(a.Y, b.Y)))
-	e.band.Show()
-	e.over.Refresh()
-}
-
-// endBand selects the blocks whose middle lies in the box; with Shift in addition.
-func (e *editor) endBand(g gesture) {
-	e.band.Hide()
-	e.over.Refresh()
-	x0, y0 := e.at(e.band.Position())
-	x1, y1 := e.at(e.band.Position().Add(e.band.Size()))
-	if !g.shifted {
-		e.selected = map[string]bool{}
-	}
-	last := ""
-	for _, b := range e.boxes {
-		if x, y := b.x+b.w/2, b.y+b.h/2; x >= x0 && x <= x1 && y >= y0 && y <= y1 {
-			e.selected[b.id] = true
-			last = b.id
-		}
-	}
-	e.opt.Selected = e.selected
-	if last == "" {
-		if ids := e.ids(); len(ids) > 0 {
-			last = ids[0]
-		}
-	}
-	e.s.ctx.Select(e.circuit, last)
-	e.redraw()
-}
-
-// choose selects a block; with add it is added to the selection, or taken out of it.
-// "" selects the circuit alone.
-func (e *editor) choose(block string, add bool) {
-	switch {
-	case add && e.selected[block]:
-		delete(e.selected, block)
-		if block = ""; len(e.selected) > 0 {
-			block = e.ids()[0]
-		}
-	case add:
-		e.selected[block] = true
-	default:
-		e.selected = map[string]bool{}
-		if block != "" {
-			e.selected[block] = true
-		}
-	}
-	e.selectLine(-1)
-	e.opt.Selected = e.selected
-	if e.circuit >= 0 {
-		e.s.ctx.Select(e.circuit, block)
-	}
-	e.redraw()
-}
-
-// Scrolled zooms at the pointer. A flick of the wheel arrives as a huge step.
+// Scrolled zooms at the pointer; with Shift it pans sideways, with Ctrl up and down. A
+// flick of the wheel arrives as a huge step.
 func (e *editor) Scrolled(ev *fyne.ScrollEvent) {
-	step := math.Max(-200, math.Min(200, float64(ev.Scrolled.DY)))
-	e.zoomAt(float64(ev.Position.X), float64(ev.Position.Y), math.Pow(1.006, step))
+	limit := func(d float32) float64 { return math.Max(-200, math.Min(200, float64(d))) }
+	dx, dy := limit(ev.Scrolled.DX), limit(ev.Scrolled.DY)
 	e.hover.hide()
+	switch mod := modifiers(); {
+	case mod&fyne.KeyModifierShift != 0 || e.keys.shift:
+		e.panBy(dx+dy, 0) // some systems turn the wheel with Shift themselves
+	case mod&fyne.KeyModifierControl != 0:
+		e.panBy(dx, dy)
+	default:
+		e.zoomAt(float64(ev.Position.X), float64(ev.Position.Y), math.Pow(1.006, dy))
+	}
+}
+
+// modifiers are the keys held now; a wheel does not tell them.
+func modifiers() fyne.KeyModifier {
+	if d, ok := fyne.CurrentApp().Driver().(desktop.Driver); ok {
+		return d.CurrentKeyModifiers()
+	}
+	return 0
 }
 
 // MouseIn, MouseMoved and MouseOut follow the pointer.
@@ -280,6 +255,11 @@ func (e *editor) MouseOut() {
 // Cursor is a hand over blocks.
 func (e *editor) Cursor() desktop.Cursor {
 	switch {
+	case e.gesture.kind == bending || e.hover.block == "" && e.hover.port == nil && e.hover.net >= 0 && e.hover.net == e.line:
+		if p, ok := e.pieceUnder(e.pointer); ok && p {
+			return desktop.VResizeCursor
+		}
+		return desktop.HResizeCursor
 	case e.gesture.kind == panning || e.keys.space || e.hover.port != nil:
 		return desktop.CrosshairCursor
 	case e.hover.block != "":

@@ -1,43 +1,55 @@
 package sheet
 
 import (
+	"fmt"
+	"maps"
 	"math"
 	"strings"
 
-	"barlitre/audit"
+	"barlitre/circuit"
 )
 
-// move puts blocks (dx, dy) modules further, as one step of undo. Places are taken
-// from the present file, which may be newer than what is drawn.
-func (s *Station) move(e *editor, ids []string, dx, dy float64) {
-	if e.sheet == nil || e.drawn == nil || len(ids) == 0 || dx == 0 && dy == 0 {
+// move puts blocks and notes (dx, dy) modules further, as one step of undo. Places are
+// taken from the present file, which may be newer than what is drawn.
+func (s *Station) move(e *editor, ids []string, notes []int, dx, dy float64) {
+	if e.sheet == nil || e.drawn == nil || len(ids)+len(notes) == 0 || dx == 0 && dy == 0 {
 		e.moved = nil
 		e.redraw()
 		return
 	}
 	at, others := e.places(ids, dx, dy)
-	var err error
-	if len(others) == 0 {
-		err = s.ctx.Doc().Move(e.name, at)
-	} else {
-		// Blocks without a place of their own would be placed anew around the moved
-		// ones: they keep the places they were given.
-		err = s.ctx.Doc().Edit("Move "+strings.Join(ids, ", "), func(f *audit.File) error {
-			for _, list := range []map[string][2]float64{others, at} {
-				for id, p := range list {
-					if err := f.SetAt(e.name, id, p); err != nil {
-						return err
-					}
-				}
-			}
-			return nil
-		})
+	// Blocks without a place of their own would be placed anew around the moved
+	// ones: they keep the places they were given.
+	maps.Copy(at, others)
+	to := map[int][2]float64{}
+	for _, i := range notes {
+		p := e.present().Notes[i].At
+		to[i] = [2]float64{math.Round(p[0] + dx), math.Round(p[1] + dy)}
 	}
-	if err != nil {
+	key := fmt.Sprint("move ", e.name, ids, notes)
+	if err := s.ctx.Doc().Place(key, moveName(ids, notes), e.name, at, to); err != nil {
 		e.moved = nil
 		s.ctx.Fail(err)
 		e.redraw()
 	}
+}
+
+// moveName names a move for undo.
+func moveName(ids []string, notes []int) string {
+	var what []string
+	switch {
+	case len(ids) == 1:
+		what = append(what, ids[0])
+	case len(ids) > 1:
+		what = append(what, fmt.Sprintf("%d blocks", len(ids)))
+	}
+	switch {
+	case len(notes) == 1:
+		what = append(what, "note")
+	case len(notes) > 1:
+		what = append(what, fmt.Sprintf("%d notes", len(notes)))
+	}
+	return "Move " + strings.Join(what, " and ")
 }
 
 // places returns where the moved blocks go, and the places of the others if any
@@ -49,10 +61,7 @@ func (e *editor) places(ids []string, dx, dy float64) (at, others map[string][2]
 	}
 	at, others = map[string][2]float64{}, map[string][2]float64{}
 	missing := false
-	c := e.drawn
-	if entry := e.s.ctx.Doc().File().Circuit(e.name); entry != nil {
-		c = entry.Circuit
-	}
+	c := e.present()
 	for i := range c.Blocks {
 		b := &c.Blocks[i]
 		x, y, ok := e.sheet.At(b.ID)
@@ -73,4 +82,12 @@ func (e *editor) places(ids []string, dx, dy float64) (at, others map[string][2]
 		others = nil
 	}
 	return at, others
+}
+
+// present is the circuit of the present file, which may be newer than what is drawn.
+func (e *editor) present() *circuit.Circuit {
+	if entry := e.s.ctx.Doc().File().Circuit(e.name); entry != nil {
+		return entry.Circuit
+	}
+	return e.drawn
 }

@@ -175,22 +175,40 @@ func TestZoomKeepsThePoint(t *testing.T) {
 	}
 }
 
-// Where laying the lines takes long, the blocks are shown as ghosts until the button
-// is released.
-func TestGhosts(t *testing.T) {
+// Where laying the lines takes long, what stays is drawn once and what moves over it,
+// until the button is released.
+func TestLiftedBlocks(t *testing.T) {
 	b := newBench(t, press, window)
 	e := b.s.editors[0]
+	e.lift.tried, e.lift.quick = true, false
 	from := b.middle(0, "RV1")
 	was := *e.drawn.Block("RV1").At
+	w, h := int(e.Size().Width), int(e.Size().Height)
 	e.MouseDown(event(from, desktop.MouseButtonPrimary, 0))
-	e.gesture.laid = 2 * slowLay
-	b.dragOn(0, from, from.AddXY(float32(3*e.zoom), 0))
-	if e.moved != nil || len(e.hover.ghosts) == 0 {
-		t.Errorf("lines laid %v, %d ghosts", e.moved != nil, len(e.hover.ghosts))
+	to := from.AddXY(float32(3*e.zoom), 0)
+	b.dragOn(0, from, to)
+	e.paint(w, h)
+	if e.moved == nil || e.lift.still == nil {
+		t.Fatalf("moved %v, picture of what stays %v", e.moved != nil, e.lift.still != nil)
+	}
+	// Drawn at once and in two layers it is the same picture but for edges that are
+	// blended twice.
+	two := append([]byte(nil), e.pen.Image().Pix...)
+	whole := e.sheet.Drag([]string{"RV1"}, 3, 0)
+	e.moved, e.lift.up = whole, nil
+	e.paint(w, h)
+	differ := 0
+	for i := range two {
+		if d := int(two[i]) - int(e.pen.Image().Pix[i]); d > 40 || d < -40 {
+			differ++
+		}
+	}
+	if differ > len(two)/1000 {
+		t.Errorf("%d of %d values of the picture in two layers differ", differ, len(two))
 	}
 	e.DragEnd()
 	b.pump()
-	if got := *b.doc.File().Circuits[0].Block("RV1").At; got != [2]float64{was[0] + 3, was[1]} || len(e.hover.ghosts) != 0 {
-		t.Errorf("RV1 at %v, was %v; %d ghosts left", got, was, len(e.hover.ghosts))
+	if got := *b.doc.File().Circuits[0].Block("RV1").At; got != [2]float64{was[0] + 3, was[1]} || e.lift.still != nil {
+		t.Errorf("RV1 at %v, was %v; picture kept %v", got, was, e.lift.still != nil)
 	}
 }

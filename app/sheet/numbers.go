@@ -24,6 +24,7 @@ type numberRow struct {
 	extra   []*fieldRow
 	about   *widget.Label
 	drop    *link // takes the value out
+	beside  *besideRow
 }
 
 func (r *numberRow) key() string { return r.param.Key }
@@ -37,6 +38,8 @@ func newNumberRow(p *panel, circuitName, block string, q *circuit.Param, target 
 	r.head.Add(r.more)
 	r.drop = widgets.Name(newLink("Drop this value; its default then holds", r.takeOut), "field."+q.Key+".drop")
 	r.drop.lead = true
+	r.beside = newBeside(p, q, r.handed)
+	r.content.Add(r.beside.content)
 	return r
 }
 
@@ -56,13 +59,19 @@ func (r *numberRow) unitNow() units.Unit {
 	if v, given := r.now(); given && v.Unit.Factor != 0 {
 		return v.Unit
 	}
-	sys := r.p.s.ctx.System()
-	if r.param.Default != "" && sys == units.Metric {
-		if _, u, err := units.Parse(r.param.Default, r.param.Dim); err == nil {
+	return r.p.preferred(r.param)
+}
+
+// preferred is the unit of a value that has none of its own: that of the default, else
+// of the user.
+func (p *panel) preferred(q *circuit.Param) units.Unit {
+	sys := p.s.ctx.System()
+	if q.Default != "" && sys == units.Metric {
+		if _, u, err := units.Parse(q.Default, q.Dim); err == nil {
 			return u
 		}
 	}
-	return units.Preferred(r.param.Dim, sys)
+	return units.Preferred(q.Dim, sys)
 }
 
 // shown is what stands in the row.
@@ -70,6 +79,10 @@ func (r *numberRow) shown() (text, hint, placeholder, unit string) {
 	u := r.unitNow()
 	v, given := r.now()
 	show(r.drop, given && !r.param.Need)
+	if list, yes := r.p.differ(r.param); yes {
+		r.fillOrigin(circuit.Value{}, given)
+		return "", list + "; " + r.rangeText(u), severalWord, u.Label()
+	}
 	if given {
 		r.fillOrigin(v, true)
 		return r.number(v.SI, u), r.hint(v, u, r.rangeText(u)), "", u.Label()
@@ -122,7 +135,7 @@ var errEmpty = errors.New("the field is empty; write a value, or press Escape to
 func (r *numberRow) take(text string) error {
 	_, given := r.now()
 	if text == "" {
-		if given {
+		if _, several := r.p.differ(r.param); given && !several {
 			return errEmpty
 		}
 		return nil
@@ -134,12 +147,14 @@ func (r *numberRow) take(text string) error {
 	if bad := r.param.CheckValue(circuit.Value{SI: si, Unit: u, Low: math.NaN(), High: math.NaN()}); bad != "" {
 		return errors.New(r.p.s.ctx.Local(lower(r.param.Title) + " " + bad))
 	}
-	return r.p.s.ctx.Doc().Set(r.target, units.FileText(si, u))
+	return r.p.set(r.target, units.FileText(si, u))
 }
 
 // takeOut drops the value from the file.
-func (r *numberRow) takeOut() {
-	err := r.p.s.ctx.Doc().Drop(r.target)
+func (r *numberRow) takeOut() { r.handed(r.p.drop(r.target)) }
+
+// handed shows what became of a change that was not typed.
+func (r *numberRow) handed(err error) {
 	r.fill()
 	if err != nil {
 		r.say(err.Error(), true)
@@ -186,7 +201,7 @@ func (r *numberRow) bound(which string, of func(circuit.Value) float64) *fieldRo
 		if err != nil {
 			return err
 		}
-		return r.p.s.ctx.Doc().Set(target, units.FileText(si, u))
+		return r.p.set(target, units.FileText(si, u))
 	})
 	x.value = func() (string, string, string, string) {
 		v, given := r.now()
@@ -205,7 +220,7 @@ func (r *numberRow) noteRow() *fieldRow {
 		if v, _ := r.now(); text == "" && v.Note == "" {
 			return nil
 		}
-		return r.p.s.ctx.Doc().Set(target, text)
+		return r.p.set(target, text)
 	})
 	x.value = func() (string, string, string, string) {
 		v, given := r.now()
@@ -218,6 +233,7 @@ func (r *numberRow) noteRow() *fieldRow {
 
 func (r *numberRow) fill() {
 	r.fieldRow.fill()
+	r.beside.fill()
 	for _, x := range r.extra {
 		x.fill()
 	}

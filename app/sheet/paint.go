@@ -28,25 +28,42 @@ func (e *editor) paint(w, h int) image.Image {
 	if e.pen == nil || e.pen.Image().Rect.Dx() != w || e.pen.Image().Rect.Dy() != h {
 		e.pen = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
 	}
-	e.pen.Reset(e.pen.Image())
-	e.pen.Clear(e.s.ctx.Palette().Card)
+	e.frames++
 	size := e.Size()
-	if size.Width <= 0 || size.Height <= 0 {
-		return e.pen.Image()
+	on := func(sh *figures.Sheet, clear bool) {
+		e.pen.Reset(e.pen.Image())
+		if clear {
+			e.pen.Clear(e.s.ctx.Palette().Card)
+		}
+		if size.Width > 0 && size.Height > 0 {
+			e.pen.Push(0, 0, float64(w)/float64(size.Width))
+			e.draw(localPen{e.pen, e.s.ctx.Local}, sh, clear)
+			e.pen.Pop()
+		}
 	}
-	e.pen.Push(0, 0, float64(w)/float64(size.Width))
-	e.draw(localPen{e.pen, e.s.ctx.Local})
-	e.pen.Pop()
+	l, view := &e.lift, [3]float64{e.zoom, e.x, e.y}
+	switch {
+	case e.moved == nil:
+		on(e.sheet, true)
+	case l.up == nil:
+		on(e.moved, true)
+	default:
+		if l.still == nil || len(l.still.Pix) != len(e.pen.Image().Pix) || l.view != view {
+			on(l.up.Still, true)
+			l.still = image.NewRGBA(e.pen.Image().Rect)
+			l.view = view
+			copy(l.still.Pix, e.pen.Image().Pix)
+		} else {
+			copy(e.pen.Image().Pix, l.still.Pix)
+		}
+		on(e.moved, false)
+	}
 	return e.pen.Image()
 }
 
-// draw draws the sheet in units of the toolkit.
-func (e *editor) draw(p pen.Pen) {
+// draw draws a sheet in units of the toolkit, with its legend where that belongs here.
+func (e *editor) draw(p pen.Pen, sh *figures.Sheet, legend bool) {
 	w, h := e.room()
-	sh := e.sheet
-	if e.moved != nil {
-		sh = e.moved
-	}
 	if sh == nil {
 		e.drawEmpty(p, w, h)
 		return
@@ -55,7 +72,7 @@ func (e *editor) draw(p pen.Pen) {
 	p.ClipRect(0, 0, w, h)
 	sh.Draw(p, e.x+ox*e.zoom, e.y+oy*e.zoom, e.zoom, e.state, e.opt)
 	p.Unclip()
-	if e.state != nil && e.legendHeight() > 0 && e.ownLegend() {
+	if legend && e.state != nil && e.legendHeight() > 0 && e.ownLegend() {
 		e.drawLegend(p, w, h)
 	}
 }

@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"fmt"
+	"strings"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
@@ -32,7 +33,13 @@ type panel struct {
 	groups  []*group
 	content *fyne.Container
 
+	compare     *link // sets the other circuit's values beside
+	compareLine *fyne.Container
+	comparing   bool
+
 	shows    string                   // circuit and block that the rows are of
+	many     []string                 // blocks that are edited together, with the one at hand
+	manyOf   string                   // their circuit
 	expanded map[circuit.Section]bool // values left at their defaults are listed as well
 	drafts   map[string]string        // refused texts, by target
 }
@@ -47,9 +54,10 @@ func newPanel(s *Station) *panel {
 	}
 	p.live = newLive(p)
 	p.newParts()
+	p.newCompare()
 	p.list = container.New(tight{})
 	p.scroll = container.NewVScroll(container.New(edges{}, p.list))
-	top := container.New(tight{}, p.head, p.links)
+	top := container.New(tight{}, p.head, p.compareLine, p.links)
 	inner := container.NewBorder(top, nil, nil, nil, p.scroll)
 	p.content = container.NewStack(p.paper, container.New(inset{4}, inner))
 	return p
@@ -106,6 +114,7 @@ func (p *panel) changed(w station.What) {
 		p.warn()
 		p.live.replot()
 		p.bringParts()
+		p.bringCompare()
 	}
 	p.live.moved()
 	p.relay()
@@ -121,14 +130,24 @@ func (p *panel) key() string {
 	case b == nil:
 		return c.Name + "/"
 	}
-	return c.Name + "/" + b.ID + "/" + b.Kind
+	return c.Name + "/" + b.ID + "/" + b.Kind + "/" + strings.Join(p.several(c, b), " ")
+}
+
+// follow takes another selection of blocks, of which the frame knows only the first.
+func (p *panel) follow() {
+	if p.shows != p.key() {
+		p.changed(station.Selection)
+	}
 }
 
 // rebuild makes the rows anew.
 func (p *panel) rebuild() {
 	p.leave()
-	p.rows, p.groups = nil, nil
+	p.rows, p.groups, p.many = nil, nil, nil
 	c, b := p.at()
+	if c != nil && b != nil {
+		p.many, p.manyOf = p.several(c, b), c.Name
+	}
 	switch {
 	case c == nil:
 	case b == nil:
@@ -274,6 +293,12 @@ func (p *panel) titles() (title, sub string) {
 	sub = b.Kind
 	if k := circuit.KindNamed(b.Kind); k != nil {
 		sub = lower(k.Title)
+	}
+	if n := len(p.many); n > 1 {
+		return strings.Join(p.many, ", "), fmt.Sprintf("%d of kind %s · %s · edited together", n, sub, c.Name)
+	}
+	if n := len(p.s.editors[p.s.active].selected); n > 1 {
+		return b.ID, fmt.Sprintf("%s · one of %d selected, of different kinds", sub, n)
 	}
 	return b.ID, sub + " · " + c.Name + " · F2 renames"
 }

@@ -71,7 +71,7 @@ func (p *panel) hidden() bool {
 func (p *panel) listed(c *audit.CircuitEntry, b *circuit.Block, q *circuit.Param) bool {
 	_, value := b.Values[q.Key]
 	_, word := b.Words[q.Key]
-	if value || word || q.Need {
+	if value || word || q.Need || p.differs(b, q) {
 		return true
 	}
 	_, draft := p.drafts[c.Name+"/"+b.ID+"."+q.Key]
@@ -98,10 +98,22 @@ func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
 		options = append([]string{none}, options...)
 	}
 	r := &choiceRow{selectRow: newSelectRow(p, q.Title, "field."+q.Key, target, options), param: q}
+	r.beside = newBeside(p, q, func(err error) {
+		r.fill()
+		if err != nil {
+			r.say(err.Error(), true)
+		}
+		p.relay()
+	})
+	r.content.Add(r.beside.content)
 	r.value = func() (string, string) {
 		b := p.block(circuitName, block)
 		if b == nil {
 			return "", ""
+		}
+		if list, yes := p.differ(q); yes {
+			r.sel.PlaceHolder = severalWord
+			return "", list
 		}
 		switch w := b.Word(q.Key); {
 		case w != "":
@@ -121,10 +133,16 @@ const none = "–"
 
 type choiceRow struct {
 	*selectRow
-	param *circuit.Param
+	param  *circuit.Param
+	beside *besideRow
 }
 
 func (r *choiceRow) key() string { return r.param.Key }
+
+func (r *choiceRow) fill() {
+	r.selectRow.fill()
+	r.beside.fill()
+}
 
 func join(link, text string) string {
 	if text == "" {

@@ -81,7 +81,7 @@ func (r *quantityRow) setOrigin(text string) {
 	if r.filling || text == "" {
 		return
 	}
-	err := r.p.s.ctx.Doc().Set(r.target+".origin", text)
+	err := r.p.set(r.target+".origin", text)
 	r.fill()
 	if err != nil {
 		r.say(err.Error(), true)

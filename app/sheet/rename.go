@@ -1,53 +1,29 @@
 package sheet
 
-import (
-	"strings"
+import "strings"
 
-	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/widget"
-
-	"barlitre/app/widgets"
-)
-
-// renameWidth leaves room for an id and the words above it [units at scale 1].
-const renameWidth = 240
-
-// openRename asks for another id of the selected block, at the block.
+// openRename asks for another id of the selected block, or another label of the selected
+// group; a note is changed.
 func (e *editor) openRename() {
+	switch {
+	case e.group >= 0:
+		e.editGroup(e.group)
+		return
+	case len(e.selected) == 0 && len(e.notes) == 1:
+		e.editNote(e.noteList()[0])
+		return
+	}
 	ids := e.chosen("rename it")
-	w := e.s.ctx.Window()
-	if len(ids) == 0 || w == nil {
+	if len(ids) == 0 || e.s.ctx.Window() == nil {
 		return
 	}
 	if len(ids) > 1 {
 		e.s.ctx.Say("Several blocks are selected; select one to rename it.")
 		return
 	}
-	var pop *widget.PopUp
-	var field *keyed
-	field = newKeyed(func(k fyne.KeyName) bool {
-		switch k {
-		case fyne.KeyReturn, fyne.KeyEnter:
-			if !e.rename(ids[0], strings.TrimSpace(field.Text)) {
-				return true // it stays, to be mended
-			}
-		case fyne.KeyEscape:
-		default:
-			return false
-		}
-		pop.Hide()
-		e.focus()
-		return true
+	e.ask("Name of the block on the sheet:", ids[0], "sheet.rename", func(text string) bool {
+		return e.rename(ids[0], strings.TrimSpace(text))
 	})
-	field.SetText(ids[0])
-	widgets.Name(field, "sheet.rename")
-	words := widget.NewLabel("Name of the block on the sheet:")
-	pop = widget.NewPopUp(container.NewVBox(words, field), w.Canvas())
-	k := widgets.Scale()
-	e.s.popAt(pop, e.popPlace(), fyne.NewSize(renameWidth*k, pop.MinSize().Height))
-	w.Canvas().Focus(field)
-	field.TypedShortcut(&fyne.ShortcutSelectAll{})
 }
 
 // rename gives a block another id, everywhere it is named, and reports whether it has it.

@@ -243,9 +243,9 @@ func newSelectRow(p *panel, title, name, target string, options []string) *selec
 		if r.filling {
 			return
 		}
-		change := func() error { return p.s.ctx.Doc().Set(target, text) }
+		change := func() error { return p.set(target, text) }
 		if text == none {
-			change = func() error { return p.s.ctx.Doc().Drop(target) }
+			change = func() error { return p.drop(target) }
 		}
 		if err := change(); err != nil {
 			r.fill()

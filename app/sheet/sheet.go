@@ -1,6 +1,8 @@
 package sheet
 
 import (
+	"slices"
+
 	"fyne.io/fyne/v2"
 
 	"barlitre/app/station"
@@ -21,13 +23,11 @@ type Station struct {
 	findings *findings
 	edge     *widgets.Figure
 
-	proposal string // name of the chosen proposal, "" = the first
-	energy   bool   // discs show a cycle instead of an instant
-	wide     bool   // one sheet in full width, as asked for
-	single   bool   // one sheet is shown, asked for or for want of room
-	active   int    // the sheet worked on last
-	fold     fold
-	scales   figures.SheetScales
+	wide   bool // one sheet in full width, as asked for
+	single bool // one sheet is shown, asked for or for want of room
+	active int  // the sheet worked on last
+	fold   fold
+	scales figures.SheetScales
 }
 
 // New makes the station.
@@ -81,6 +81,7 @@ func (s *Station) Changed(w station.What) {
 	s.panel.changed(w)
 	if w.Has(station.Selection) {
 		s.revealSelected()
+		s.findings.follow()
 	}
 	s.bar.reload()
 	if w.Has(station.Model | station.Settings | station.Selection) {
@@ -139,8 +140,8 @@ func (s *Station) bringCircuits(model bool) {
 	}
 }
 
-// shown returns the circuits of the two sheets, −1 for none: the first as found,
-// and the chosen proposal. A selected circuit that neither shows becomes the second.
+// shown returns the circuits of the two sheets, −1 for none: the first as found, else
+// the first of all, and the one picked beside it.
 func (s *Station) shown() (left, right int) {
 	file := s.ctx.Doc().File()
 	left, right = -1, -1
@@ -148,19 +149,11 @@ func (s *Station) shown() (left, right int) {
 		return
 	}
 	left = 0
-	for i, c := range file.Circuits {
-		if c.Role == audit.AsFound {
-			left = i
-			break
-		}
+	if base := file.Base(); base != nil {
+		left = slices.IndexFunc(file.Circuits, func(c audit.CircuitEntry) bool { return c.Name == base.Name })
 	}
-	if at, _ := s.ctx.Selected(); at >= 0 && at < len(file.Circuits) && at != left {
-		s.proposal = file.Circuits[at].Name
-	}
-	for i, c := range file.Circuits {
-		if i != left && (right < 0 || c.Name == s.proposal) {
-			right = i
-		}
+	if name := s.ctx.Beside(); name != "" {
+		right = slices.IndexFunc(file.Circuits, func(c audit.CircuitEntry) bool { return c.Name == name })
 	}
 	return
 }
@@ -195,7 +188,7 @@ func (s *Station) solved(name string) *audit.CircuitRun {
 // bringState gives both sheets the state at the clock.
 func (s *Station) bringState() {
 	for i, e := range s.editors {
-		if run := s.run(i); s.energy {
+		if run := s.run(i); s.ctx.View().Cycle {
 			e.state = figures.OverCycle(run, s.ctx.Clock())
 		} else {
 			e.state = figures.StateAt(run, s.ctx.Clock())
@@ -206,10 +199,11 @@ func (s *Station) bringState() {
 
 // bringOptions gives both sheets one set of scales, colours and units.
 func (s *Station) bringOptions() {
+	marks := figures.Marks(s.findings.list)
 	for _, e := range s.editors {
 		e.opt.Palette, e.opt.System, e.opt.Scales = s.ctx.Palette(), s.ctx.System(), s.scales
-		e.opt.Findings = s.findings.marks(e.name)
-		e.opt.Selected = e.selected
+		e.opt.Findings = marks[e.name]
+		e.opt.Selected, e.opt.Hide = e.selected, s.ctx.View().Hide
 	}
 }
 
@@ -253,7 +247,7 @@ func (s *Station) setWide(on bool) {
 
 // setEnergy switches the discs between the instant and the cycle.
 func (s *Station) setEnergy(on bool) {
-	s.energy = on
+	s.ctx.View().Cycle = on
 	s.bringState()
 	s.bar.reload()
 	for _, e := range s.editors {
@@ -281,16 +275,24 @@ func (s *Station) sheetShown(i int) bool {
 
 const helpText = `Two circuits, one duty, one clock: the circuit as found on the left, a proposal on the right. Move the clock below, and both show that instant.
 
-The tint of a line is its pressure, its width the flow; the amber disc at a block is the power it turns to heat, or over a cycle its energy. Both sheets have the same scales.
+The tint of a line is its pressure, its width the flow; the amber disc at a block is the power it turns to heat, or over a cycle its energy. Both sheets have the same scales. “Results shown” switches each of these signs, and the numbers, off and on.
 
-Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. The values of machines and drives stand in sections; “more” on a section shows those left at their defaults, “more” on a value lets it be dropped, so that its default holds again. Below stand what it does now, what the duty asks of it against what is permitted, its year beside that of the same machine in the other circuit, and pictures; the words on top lead there. With nothing selected the panel has the oil.
+The pointer reads: at a line pressure, flow, power, and velocity where it touches a line whose inner diameter is known; at a valve its position and each way that is open, which is also drawn bold.
 
-Shift adds to the selection, dragging over the ground selects with a box, Tab goes from block to block.
+Click a block to see and change its values on the right; type a value with any unit, as in 2300 psi. The values of machines and drives stand in sections; “more” on a section shows those left at their defaults, “more” on a value lets it be dropped, so that its default holds again. Below stand what it does now, what the duty asks of it against what is permitted, its year beside that of the same machine in the other circuit, and pictures; the words on top lead there. With nothing selected the panel has the oil. Several selected blocks of a kind are edited together: a field shows what they have in common, or “several”, and one change is one step for all. “Compare” sets the values of the same block in the other circuit beside these; ≠ marks what differs, and “take this” takes it over.
 
-Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it) to another port or to a line to connect them; what cannot be joined is refused, and the line below the window says why. The ports of a junction lie at its dot: select it to drag it.
+Circuits… makes a further proposal, from a copy or empty, picks the one that stands beside the circuit as found, renames, duplicates and deletes it, or swaps the sides. The verdict and all stations follow the one picked; the report has all of them.
 
-Del removes the selected block, and the lines on both sides become one; a click selects a line, and Del removes it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet. Ctrl+Z takes back each of these.
+Shift adds to the selection, dragging over the ground selects with a box, Ctrl+A selects all, Escape nothing. Tab goes from block to block, then to notes and groups.
 
-Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules). Escape cancels. The wheel zooms to the pointer, the middle button or Space with a drag pans, F fits, W shows one sheet in full width.
+Add a block with / or the button above: type a part of its name, Enter puts it at the pointer. Drag from a port (a ring shows it), or from anywhere on a line, to a port or a line to connect them; the label at the pointer says what a release will do, or why it is refused. By keys: C, choose the port of the selected block, Enter, choose the other port, Enter. The ports of a junction lie at its dot: select it to drag it.
 
-The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time.`
+Lines find their way by themselves. To lay one by hand, click it and drag a piece of it sideways; S lets it find its way again. A second click chooses one branch of a line. By keys: L goes through the lines, B through the pieces of one, arrow keys move the piece.
+
+Del removes the selected block, and the lines on both sides become one; it removes the selected line, or the chosen branch of it. R rotates, M mirrors, F2 renames, Ctrl+D duplicates, Ctrl+C, Ctrl+X and Ctrl+V go through the clipboard, also to the other sheet and to another window of the program. Ctrl+Z takes back each of these.
+
+Ctrl+G draws a box with a label around the selected blocks; its label moves all in it. N writes a note at the pointer (Enter begins a line, Ctrl+Enter ends it). F2 or Enter changes either, Del removes it; both are printed with the circuit.
+
+Drag a block to move it, or nudge it with the arrow keys (Shift: 5 modules); thin lines show what it is in line with. Escape cancels. The wheel zooms to the pointer, with Shift or Ctrl it pans, as does the middle button, Space with a drag, or the arrow and page keys with nothing selected. F fits, Z shows the selection, W one sheet in full width.
+
+The findings say what is wrong, likely wrong, or worth knowing; a click goes to the block and the time, and blocks are marked. Where there is one sensible cure, a button below the finding does it (M in the list): it draws what is missing or sets what does not fit, with values that are marked as assumed and are yours to check. File > Sheets as PDF prints the circuits as they are seen.`

@@ -120,7 +120,8 @@ func TestClockAndHeatSwitch(t *testing.T) {
 		}
 	}
 	now := b.s.editors[0].state.Heat("RV1")
-	test.Tap(b.s.bar.heat)
+	b.press("sheet.signs")
+	widgets.Named("sheet.sign.cycle").(*widgets.Check).SetChecked(true)
 	e := b.s.editors[0]
 	var want float64
 	for _, l := range b.s.run(0).Balance.Losses {
@@ -269,7 +270,7 @@ func TestDumpNames(t *testing.T) {
 	var out bytes.Buffer
 	widgets.Dump(&out, b.win.Canvas())
 	for _, want := range []string{"sheet.0\tAs found [RV1]\t", "sheet.0/RV1\tRV1 · relief valve", "sheet.1/P1\t", "field.crack\t220\t", "field.crack.origin\tmeasured\t",
-		"sheet.findings\t", "sheet.findings/0\tCaution", "sheet.wide\tShow one sheet (W)\t", "sheet.fit\tFit (F)\t", "sheet.heat\tShow heat over the cycle\t", "sheet.live/Heat\t"} {
+		"sheet.findings\t", "sheet.findings/0\tCaution", "sheet.wide\tShow one sheet (W)\t", "sheet.fit\tFit (F)\t", "sheet.signs\tResults shown…\t", "sheet.circuits\tCircuits…\t", "sheet.live/Heat\t"} {
 		if !strings.Contains(out.String(), want) {
 			t.Errorf("the dump lacks %q", want)
 		}

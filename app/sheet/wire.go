@@ -18,6 +18,10 @@ type wire struct {
 	line  *canvas.Line
 	rings [2]*canvas.Circle // at the port that it begins at, and the one it would end at
 	dots  []*canvas.Circle
+
+	tried   string // the last pair of ends that was tried
+	triedOn int    // on this revision
+	refusal error
 }
 
 // Sizes of rings and dots [units at scale 1].
@@ -46,6 +50,16 @@ func (w *wire) recolour() {
 	for _, d := range w.dots {
 		d.FillColor = pal.Gain
 	}
+}
+
+// tint draws the line in the colour of danger where it would be refused.
+func (w *wire) tint(fine bool) {
+	pal := w.e.s.ctx.Palette()
+	c := pal.Gain
+	if !fine {
+		c = pal.Danger
+	}
+	w.line.StrokeColor, w.rings[1].StrokeColor = c, c
 }
 
 // hide takes all of it off the sheet.
@@ -135,12 +149,16 @@ func (e *editor) portLines(p circuit.PortRef) []string {
 
 // netOf returns the drawn line that a port stands on, −1 for none.
 func (e *editor) netOf(p circuit.PortRef) int {
-	for n := 0; n < e.sheet.Nets(); n++ {
-		for _, q := range e.sheet.Net(n) {
-			if q == p {
-				return n
+	if e.netsOn != e.sheet {
+		e.netsOn, e.nets = e.sheet, map[circuit.PortRef]int{}
+		for n := e.sheet.Nets() - 1; n >= 0; n-- {
+			for _, q := range e.sheet.Net(n) {
+				e.nets[q] = n
 			}
 		}
+	}
+	if n, ok := e.nets[p]; ok {
+		return n
 	}
 	return -1
 }
@@ -148,52 +166,55 @@ func (e *editor) netOf(p circuit.PortRef) int {
 // joined tells whether a port stands on a line.
 func (e *editor) joined(p circuit.PortRef) bool { return e.netOf(p) >= 0 }
 
-// wireTo draws the line from the port that it began at to the pointer, and shows the
-// port that it would end at.
+// wireTo draws the line from where it began to the pointer, and tells what a release there
+// would do.
 func (e *editor) wireTo(at fyne.Position) {
 	g := &e.gesture
 	g.at = at
 	w := &e.wire
-	end := e.portAt(at)
-	if end != nil && end.PortRef == g.port.PortRef {
-		end = nil
+	from, to := e.wireEnds(*g)
+	w.line.Position1, w.line.Position2 = g.from, at
+	if g.port != nil {
+		w.line.Position1 = e.onScreen(*g.port)
 	}
-	w.line.Position1, w.line.Position2 = e.onScreen(*g.port), at
-	if end != nil {
-		w.line.Position2 = e.onScreen(*end)
+	if to.port != nil {
+		w.line.Position2 = e.onScreen(*to.port)
 	}
 	w.line.Show()
 	w.ring(0, g.port)
-	w.ring(1, end)
+	w.ring(1, to.port)
 	block, _, _ := e.hit(at)
 	w.mark(block)
+	text, fine := e.joinSays(from, to)
+	w.tint(fine)
+	e.hover.tell(at, text)
 	canvas.Refresh(e.over)
 }
 
-// endWire connects the port that a line began at with what is under the pointer.
+// wireEnds are what a drawn line begins at, and would end at where it is now.
+func (e *editor) wireEnds(g gesture) (from, to lineEnd) {
+	from, to = lineEnd{g.port, g.net}, lineEnd{e.portAt(g.at), -1}
+	if g.port != nil {
+		from.net = -1
+	}
+	if to.port == nil {
+		_, to.net, _ = e.hit(g.at)
+	}
+	return from, to
+}
+
+// endWire joins what a line began at with what is under the pointer.
 func (e *editor) endWire(g gesture) {
 	e.wire.hide()
+	e.hover.hide()
 	canvas.Refresh(e.over)
-	from, doc := g.port.String(), e.s.ctx.Doc()
-	end := e.portAt(g.at)
-	_, net, _ := e.hit(g.at)
-	to, err := "", error(nil)
-	switch {
-	case end != nil && end.PortRef == g.port.PortRef:
-		return
-	case end != nil:
-		to, err = end.String(), doc.Connect(e.name, from, end.String())
-	case net >= 0:
-		lines, _ := e.sheet.Lines(net)
-		to, err = "the line "+e.lineName(net), doc.ConnectLine(e.name, from, lines[0])
-	default:
-		e.s.ctx.Say("Nothing connected: release on a port or on a line to connect " + from + ".")
+	from, to := e.wireEnds(g)
+	if from.is(to) {
 		return
 	}
-	if err != nil {
-		e.s.refused(err)
+	if !to.any() {
+		e.s.ctx.Say("Nothing connected: release on a port or on a line to connect " + e.endName(from) + ".")
 		return
 	}
-	e.fitted = false
-	e.s.ctx.Say("Connected " + from + " and " + to + ". Ctrl+Z takes it back.")
+	e.connect(from, to)
 }

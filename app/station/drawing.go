@@ -14,6 +14,12 @@ const (
 	Mirror
 	Rename
 	AddBlock
+	SelectAll
+	Group // a box with a label around what is selected
+	AddNote
+	Connect // draw a line by keys
+	Straighten
+	FitSelection
 )
 
 // Drawing is a station whose selection the Edit menu acts on.

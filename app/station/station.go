@@ -23,13 +23,14 @@ const (
 	Clock                      // the clock moved
 	Settings                   // theme, units, decimal sign, scale
 	Selection                  // another block, circuit or duty is selected
+	Advice                     // what is to be put right first, or how far the work on it is
 )
 
 // Has reports whether w holds x.
 func (w What) Has(x What) bool { return w&x != 0 }
 
 // Everything is what changes when another file is opened.
-const Everything = Model | Solution | Clock | Settings | Selection
+const Everything = Model | Solution | Clock | Settings | Selection | Advice
 
 // Station is one page of the job. All methods are called on the UI goroutine.
 type Station interface {
@@ -56,6 +57,12 @@ type Recordings interface {
 // RecordingEndings are how names of loggers' files end.
 var RecordingEndings = []string{".csv", ".tsv", ".txt", ".dat", ".asc", ".log", ".prn"}
 
+// View says how sheets show results: by which signs, and of what time their heat is.
+type View struct {
+	Cycle bool          // discs show a cycle instead of an instant
+	Hide  figures.Signs // signs that are left out
+}
+
 // Context is what stations read and act through. The frame implements it.
 type Context interface {
 	Doc() *document.Document
@@ -71,10 +78,19 @@ type Context interface {
 	Selected() (circuit int, block string)
 	Select(circuit int, block string)
 
+	// Beside is the name of the circuit that stands beside the one as found, "" for none;
+	// of several the user picks one, and all stations follow.
+	Beside() string
+	Pick(circuit string)
+
+	// View is what the sheets show of the results, for what prints them as they are seen.
+	View() *View
+
 	// Solution is the last finished one, nil before the first; it may be of an
-	// older revision (then the frame says "out of date").
+	// older revision (then the frame says "out of date"). It has the circuit as found and
+	// the one beside it; that of the document has all.
 	Solution() *audit.Solution
-	// Report lays the solution out in the user's units, nil before the first solution.
+	// Report lays this solution out in the user's units, nil before the first solution.
 	Report() *audit.Report
 
 	System() units.System

@@ -21,6 +21,15 @@ func passHelp(o fyne.CanvasObject, k *fyne.KeyEvent) bool {
 	return true
 }
 
+// passOn hands F1 and Escape on, of widgets that have no use for either.
+func passOn(o fyne.CanvasObject, k *fyne.KeyEvent) bool {
+	if k.Name == fyne.KeyEscape {
+		PassKey(o, k)
+		return true
+	}
+	return passHelp(o, k)
+}
+
 // Button is a button that leaves F1 to the window.
 type Button struct{ widget.Button }
 
@@ -40,7 +49,7 @@ func (b *Button) FocusGained() {
 
 // TypedKey presses by Space.
 func (b *Button) TypedKey(k *fyne.KeyEvent) {
-	if !passHelp(b, k) {
+	if !passOn(b, k) {
 		b.Button.TypedKey(k)
 	}
 }
@@ -67,7 +76,7 @@ func (c *Check) FocusGained() {
 
 // TypedKey leaves F1 to the window.
 func (c *Check) TypedKey(k *fyne.KeyEvent) {
-	if !passHelp(c, k) {
+	if !passOn(c, k) {
 		c.Check.TypedKey(k)
 	}
 }
@@ -78,6 +87,31 @@ func (c *Check) DumpText() string {
 		return c.Text + "=true"
 	}
 	return c.Text + "=false"
+}
+
+// Slider is a slider that leaves F1 to the window.
+type Slider struct{ widget.Slider }
+
+// NewSlider makes a slider from low to high in steps.
+func NewSlider(low, high, step float64, changed func(float64)) *Slider {
+	s := &Slider{}
+	s.Min, s.Max, s.Step, s.OnChanged = low, high, step, changed
+	s.Orientation = widget.Horizontal
+	s.ExtendBaseWidget(s)
+	return s
+}
+
+// FocusGained scrolls it into sight.
+func (s *Slider) FocusGained() {
+	s.Slider.FocusGained()
+	reveal(s)
+}
+
+// TypedKey leaves F1 to the window.
+func (s *Slider) TypedKey(k *fyne.KeyEvent) {
+	if !passHelp(s, k) {
+		s.Slider.TypedKey(k)
+	}
 }
 
 // Select is a choice that leaves F1 to the window.
@@ -100,7 +134,7 @@ func (s *Select) FocusGained() {
 
 // TypedKey leaves F1 to the window.
 func (s *Select) TypedKey(k *fyne.KeyEvent) {
-	if !passHelp(s, k) {
+	if !passOn(s, k) {
 		s.Select.TypedKey(k)
 	}
 }

@@ -21,6 +21,9 @@ type Sheet struct {
 	stretches []stretch
 	crossings []drawing.Crossing
 	labels    []sheetLabel
+	notes     []sheetNote
+	veil      *veil // what is not drawn, nil = all is
+	laid      *routing
 	seen      *seen       // nil before there are results
 	box       drawing.Box // of everything that may be drawn, without legend
 }
@@ -31,11 +34,16 @@ const sheetMargin = 1.5
 // NewSheet lays a circuit out: blocks without a place are placed, lines are routed,
 // labels find room. It never fails: a block of unknown kind is drawn as a box with its
 // id, ports that do not exist are left out. c must not change afterwards.
-func NewSheet(c *circuit.Circuit) *Sheet {
-	s := &Sheet{circuit: c, parts: partsOf(c)}
+func NewSheet(c *circuit.Circuit) *Sheet { return (*Sheet)(nil).Next(c) }
+
+// Next is NewSheet for another state of the circuit of a sheet: where places and lines
+// are as before, as after a change of a value, the lines need not be laid again. The
+// answer is that of NewSheet.
+func (before *Sheet) Next(c *circuit.Circuit) *Sheet {
+	s := &Sheet{circuit: c, parts: partsOf(c), notes: notesOf(c)}
 	s.connect()
 	s.place()
-	s.route()
+	s.route(before)
 	s.placeLabels()
 	s.measure()
 	return s
@@ -96,7 +104,22 @@ func (s *Sheet) moved(blocks []string, dx, dy float64) *circuit.Circuit {
 		}
 		b.At = &[2]float64{x, y}
 	}
+	s.carryBends(&c)
 	return &c
+}
+
+// carryBends takes along the lines laid by hand that lead to moved blocks only.
+func (s *Sheet) carryBends(c *circuit.Circuit) {
+	at := map[string][2]float64{}
+	for i := range c.Blocks {
+		if b := &c.Blocks[i]; b.At != nil {
+			at[b.ID] = *b.At
+		}
+	}
+	c.Bends = append([]circuit.SheetBend(nil), c.Bends...)
+	for i, b := range c.Bends {
+		c.Bends[i], _ = s.circuit.Carried(b, at)
+	}
 }
 
 // measure sets the box of the sheet from all that may be drawn on it.
@@ -119,6 +142,12 @@ func (s *Sheet) measure() {
 	}
 	for _, l := range s.labels {
 		box = union(box, l.box)
+	}
+	for _, n := range s.notes {
+		box = union(box, n.box)
+	}
+	for _, g := range s.groups() {
+		box = union(box, union(g.box, g.label))
 	}
 	if box.Min.X > box.Max.X {
 		box = drawing.Box{Max: drawing.Pt{X: 20, Y: 10}} // an empty circuit still has a sheet

@@ -10,7 +10,7 @@ import (
 // plain elbows, everything else stays as it is. It moves by any fraction of a module.
 // Size and Origin stay those of s, so that nothing jumps; what is dragged beyond them is
 // drawn there all the same.
-func (s *Sheet) Drag(blocks []string, dx, dy float64) *Sheet {
+func (s *Sheet) Drag(blocks []string, dx, dy float64, notes ...int) *Sheet {
 	out := *s
 	if !finite(dx) || !finite(dy) {
 		return &out
@@ -36,6 +36,12 @@ func (s *Sheet) Drag(blocks []string, dx, dy float64) *Sheet {
 		}
 		for _, j := range n.junctions {
 			stale[i] = stale[i] || moves[j]
+		}
+	}
+	out.notes = append([]sheetNote(nil), s.notes...)
+	for _, i := range notes {
+		if i >= 0 && i < len(out.notes) {
+			out.notes[i].box = movedBox(out.notes[i].box, drawing.Pt{X: dx, Y: dy})
 		}
 	}
 	out.redraw(stale)
@@ -73,6 +79,16 @@ func movedBox(b drawing.Box, by drawing.Pt) drawing.Box {
 // redraw replaces the lines of stale nets by elbows from their first port to each other.
 func (s *Sheet) redraw(stale map[int]bool) {
 	_, nets := s.routeInput()
+	for i := range s.nets {
+		if stale[i] {
+			s.nets[i].route = star(i, nets[i])
+		}
+	}
+	s.relay(stale, nets)
+}
+
+// relay cuts the stale nets, which have new routes, into stretches.
+func (s *Sheet) relay(stale map[int]bool, nets []drawing.Net) {
 	stretches := make([]stretch, 0, len(s.stretches))
 	for _, st := range s.stretches {
 		if !stale[st.net] {
@@ -81,7 +97,6 @@ func (s *Sheet) redraw(stale map[int]bool) {
 	}
 	for i := range s.nets {
 		if stale[i] {
-			s.nets[i].route = star(i, nets[i])
 			stretches = append(stretches, s.cut(i, nets[i])...)
 		}
 	}

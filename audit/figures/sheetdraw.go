@@ -36,9 +36,13 @@ type SheetOptions struct {
 	Selected   map[string]bool
 	Hover      map[string]bool
 	Lines      map[int]bool // selected lines, by number
+	Piece      *SheetPiece  // selected piece of a line
+	Notes      map[int]bool // selected notes and groups, by place in the circuit
+	Groups     map[int]bool
 	Findings   map[string]circuit.Level
 	Legend     bool // below the sheet, LegendHeight high
 	HideLabels bool
+	Hide       Signs // results that are not shown
 }
 
 // SheetKind says what a region of a sheet shows.
@@ -75,7 +79,10 @@ type sheetDrawing struct {
 	scales SheetScales
 	most   float64 // heat of the largest disc
 	now    []netNow
+	tints  []color.NRGBA  // of the lines
+	warm   color.NRGBA    // of numbers that belong to a disc
 	stubOf []map[int]bool // by part: pieces drawn as lines
+	bold   float64        // how much wider than usual symbols are drawn; 0 = as usual
 }
 
 // Draw draws the sheet with its upper left corner at (x, y), scale units of p a module,
@@ -89,8 +96,14 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	if st != nil && st.Energy {
 		d.most = d.scales.Energy
 	}
+	d.warm = d.pal.heatText()
+	d.tints = make([]color.NRGBA, len(d.now))
+	for i, n := range d.now {
+		d.tints[i] = d.tint(n)
+	}
 	p.Push(x, y, scale)
 	p.Push(-s.box.Min.X, -s.box.Min.Y, 1)
+	d.groupBoxes()
 	d.highlights()
 	d.discs()
 	d.lines()
@@ -98,6 +111,7 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 	if !opt.HideLabels {
 		d.labelTexts()
 	}
+	d.noteTexts()
 	p.Pop()
 	if opt.Legend {
 		w, h := s.Size()
@@ -149,7 +163,7 @@ func (d *sheetDrawing) highlights() {
 	for i := range d.parts {
 		p := &d.parts[i]
 		sel, hov := d.opt.Selected[p.id], d.opt.Hover[p.id]
-		if !sel && !hov {
+		if !sel && !hov || d.veil.part(i) {
 			continue
 		}
 		b := grown(p.body, 0.5)
@@ -163,10 +177,13 @@ func (d *sheetDrawing) highlights() {
 
 // discs draws the heat of the blocks.
 func (d *sheetDrawing) discs() {
+	if d.opt.hides(Discs) {
+		return
+	}
 	for i := range d.parts {
 		p := &d.parts[i]
 		share := ratio(d.st.Heat(p.id), d.most)
-		if share < discShown || p.copied {
+		if share < discShown || p.copied || d.veil.part(i) {
 			continue
 		}
 		d.p.Circle(penPt(p.centre), discOf(share), faded(d.pal.Heat, 84), pen.Stroke{W: 0.16, C: faded(d.pal.Heat, 190)})

@@ -107,22 +107,24 @@ const (
 
 // labeller keeps what is already taken.
 type labeller struct {
-	solid, lines []drawing.Box
-	bodies       []drawing.Box // by part
-	labels       []drawing.Box
+	solid, lines, labels boxIndex
+	bodies               boxIndex // by part
 }
 
 func (s *Sheet) placeLabels() {
 	k := &labeller{}
 	for i := range s.parts {
-		k.solid = append(k.solid, s.parts[i].solid...)
-		k.bodies = append(k.bodies, s.parts[i].body)
+		for _, b := range s.parts[i].solid {
+			k.solid.add(b)
+		}
+		k.bodies.add(s.parts[i].body)
 	}
 	for _, st := range s.stretches {
 		for i := 1; i < len(st.pts); i++ {
-			k.lines = append(k.lines, segmentBox(st.pts[i-1], st.pts[i]))
+			k.lines.add(segmentBox(st.pts[i-1], st.pts[i]))
 		}
 	}
+	s.marksTaken(k)
 	s.labels = nil
 	for i := range s.parts {
 		s.labels = append(s.labels, s.blockLabel(i, k))
@@ -136,28 +138,27 @@ func segmentBox(a, b drawing.Pt) drawing.Box {
 
 // weigh returns what lies under a box, in costs, up to limit; ok is false if a label does.
 func (k *labeller) weigh(b drawing.Box, limit float64) (cost float64, ok bool) {
-	for _, o := range k.labels {
-		if shared(grown(b, 0.4), o) > 0 {
-			return 0, false
-		}
+	ok = true
+	k.labels.near(grown(b, 0.4), func(i int) bool {
+		ok = shared(grown(b, 0.4), k.labels.boxes[i]) == 0
+		return ok
+	})
+	if !ok {
+		return 0, false
 	}
 	near := grown(b, 0.25)
-	for _, o := range k.lines {
-		if shared(near, o) > 0 {
+	k.lines.near(near, func(i int) bool {
+		if o := k.lines.boxes[i]; shared(near, o) > 0 {
 			cost += costOnLine * math.Max(1, math.Max(math.Min(b.Max.X, o.Max.X)-math.Max(b.Min.X, o.Min.X), math.Min(b.Max.Y, o.Max.Y)-math.Max(b.Min.Y, o.Min.Y)))
 		}
-		if cost > limit {
-			return cost, true
-		}
-	}
-	for _, o := range k.solid {
-		if a := shared(near, o); a > 0 {
+		return cost <= limit
+	})
+	k.solid.near(near, func(i int) bool {
+		if a := shared(near, k.solid.boxes[i]); a > 0 {
 			cost += costOnSymbol * (0.5 + a)
 		}
-		if cost > limit {
-			break
-		}
-	}
+		return cost <= limit
+	})
 	return cost, true
 }
 
@@ -179,11 +180,12 @@ func (k *labeller) best(spots []labelSpot) (labelSpot, bool) {
 
 // take enters a label.
 func (k *labeller) take(sp labelSpot, part int) sheetLabel {
-	k.labels = append(k.labels, sp.box)
+	k.labels.add(sp.box)
 	l := sheetLabel{part: part, stretch: sp.stretch, rows: sp.rows, box: sp.box, align: sp.align}
-	for _, o := range k.lines {
-		l.halo = l.halo || shared(sp.box, o) > 0
-	}
+	k.lines.near(sp.box, func(i int) bool {
+		l.halo = l.halo || shared(sp.box, k.lines.boxes[i]) > 0
+		return !l.halo
+	})
 	return l
 }
 
@@ -239,12 +241,13 @@ func (s *Sheet) blockLabel(i int, k *labeller) sheetLabel {
 // doubt is what speaks against a place where a label may be taken for that of another
 // block: one that is nearer than its own.
 func (k *labeller) doubt(b drawing.Box, part int) float64 {
-	own, cost := apart(b, k.bodies[part]), 0.0
-	for i, o := range k.bodies {
-		if gap := apart(b, o); i != part && gap < own+1 {
+	own, cost := apart(b, k.bodies.boxes[part]), 0.0
+	k.bodies.near(grown(b, own+1), func(i int) bool {
+		if gap := apart(b, k.bodies.boxes[i]); i != part && gap < own+1 {
 			cost += costDoubt * math.Min(2, own+1-gap)
 		}
-	}
+		return true
+	})
 	return cost
 }
 

@@ -20,16 +20,18 @@ const legendGap = 3.0
 // Scales that are zero are left out. It takes LegendHeight.
 func DrawLegend(p pen.Pen, w float64, sc SheetScales, energy bool, opt SheetOptions) {
 	l := legendPen{p: p, pal: opt.Palette, sys: opt.System, end: w}
-	if sc.Pressure > 0 {
+	if sc.Pressure > 0 && !opt.hides(Tint) {
 		l.pressure(sc.Pressure)
 	}
-	if sc.Flow > 0 {
+	if sc.Flow > 0 && !opt.hides(Width) {
 		l.flow(sc.Flow)
 	}
-	if h := sc.Heat; energy {
+	switch {
+	case opt.hides(Discs):
+	case energy:
 		l.heat(sc.Energy, true)
-	} else if h > 0 {
-		l.heat(h, false)
+	case sc.Heat > 0:
+		l.heat(sc.Heat, false)
 	}
 	l.sample("pilot", drawing.Pilot)
 	l.sample("drain", drawing.Drain)

@@ -11,15 +11,15 @@ import (
 // widthOf is the width of a line with flow q: in proportion to its root, so that the
 // area of the line is to the flow as with round pipes of one velocity.
 func (d *sheetDrawing) widthOf(q float64) float64 {
-	if d.st == nil {
+	if d.st == nil || d.opt.hides(Width) {
 		return symbolLine
 	}
 	return math.Max(lineThin, lineWidest*math.Sqrt(math.Min(1, ratio(math.Abs(q), d.scales.Flow))))
 }
 
-// tintOf is the colour of a line: that of its pressure, ink without a state.
-func (d *sheetDrawing) tintOf(n netNow) color.NRGBA {
-	if !n.known {
+// tint is the colour of a line: that of its pressure, ink without a state.
+func (d *sheetDrawing) tint(n netNow) color.NRGBA {
+	if !n.known || d.opt.hides(Tint) {
 		return d.pal.Ink
 	}
 	if math.IsNaN(n.pressure) {
@@ -31,25 +31,35 @@ func (d *sheetDrawing) tintOf(n netNow) color.NRGBA {
 // lines draws lines, the gaps where they cross, dots and chevrons.
 func (d *sheetDrawing) lines() {
 	for i := range d.stretches {
-		if st := &d.stretches[i]; d.opt.Lines[st.net] {
+		if st := &d.stretches[i]; d.opt.Lines[st.net] && !d.veil.net(st.net) {
 			d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1, C: faded(d.pal.Gain, 90)})
 		}
 	}
+	if st := d.piece(d.opt.Piece); st != nil && !d.veil.net(st.net) {
+		d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1.2, C: faded(d.pal.Gain, 170)})
+	}
 	for i := range d.stretches {
-		d.line(&d.stretches[i])
+		if !d.veil.net(d.stretches[i].net) {
+			d.line(&d.stretches[i])
+		}
 	}
 	d.drawStubs()
 	for _, c := range d.crossings {
-		d.crossing(c)
+		if !d.veil.net(c.Over) && !d.veil.net(c.Under) {
+			d.crossing(c)
+		}
 	}
 	for i := range d.nets {
 		d.dots(i)
 	}
 	for i := range d.stretches {
 		st := &d.stretches[i]
+		if d.veil.net(st.net) || d.opt.hides(Chevrons) {
+			continue
+		}
 		if q := st.along(d.now[st.net]); d.flowing(q) {
 			for _, c := range d.chevrons(st, q, d.widthOf(q)) {
-				d.chevron(c, d.tintOf(d.now[st.net]))
+				d.chevron(c, d.tints[st.net])
 			}
 		}
 	}
@@ -77,7 +87,7 @@ func (d *sheetDrawing) stroke(st *stretch) pen.Stroke {
 	if st.pilot {
 		w = lineThin
 	}
-	return dashed(w, d.tintOf(d.now[st.net]), st.style)
+	return dashed(w, d.tints[st.net], st.style)
 }
 
 // dashed is a stroke of a style; the dashes of a wide line are longer.
@@ -136,6 +146,9 @@ func (d *sheetDrawing) drawStubs() {
 			d.stubOf[sb.part] = map[int]bool{}
 		}
 		d.stubOf[sb.part][sb.prim] = true
+		if d.veil.net(sb.net) {
+			continue
+		}
 		n := d.now[sb.net]
 		w := d.widthOf(n.into[sb.end])
 		if sb.pilot {
@@ -146,7 +159,7 @@ func (d *sheetDrawing) drawStubs() {
 			pts[0].X -= 0.2 / out * (pts[1].X - pts[0].X)
 			pts[0].Y -= 0.2 / out * (pts[1].Y - pts[0].Y)
 		}
-		d.p.Polyline(pts, false, color.NRGBA{}, dashed(w, d.tintOf(n), sb.style))
+		d.p.Polyline(pts, false, color.NRGBA{}, dashed(w, d.tints[sb.net], sb.style))
 	}
 }
 
@@ -205,7 +218,7 @@ func (s *Sheet) stretchAt(net int, at drawing.Pt, upright bool) *stretch {
 
 // dots marks where lines of a net meet, no narrower than the lines.
 func (d *sheetDrawing) dots(i int) {
-	if !d.nets[i].kind.Fluid() {
+	if !d.nets[i].kind.Fluid() || d.veil.net(i) {
 		return
 	}
 	for _, at := range d.nets[i].route.Dots {
@@ -216,7 +229,7 @@ func (d *sheetDrawing) dots(i int) {
 				w = math.Max(w, d.stroke(st).W)
 			}
 		}
-		d.p.Circle(penPt(at), math.Max(0.42, w/2+0.12), d.tintOf(d.now[i]), pen.Stroke{})
+		d.p.Circle(penPt(at), math.Max(0.42, w/2+0.12), d.tints[i], pen.Stroke{})
 	}
 }
 

@@ -71,3 +71,18 @@ func TestFreePlaceIsClear(t *testing.T) {
 		}
 	})
 }
+
+// TestMarksCoverNoLabel: wherever a block of a sample may be marked, no label lies below.
+func TestMarksCoverNoLabel(t *testing.T) {
+	eachSheet(t, func(what string, _ *circuit.Circuit, s *Sheet) {
+		for i := range s.parts {
+			at := s.markPlace(&s.parts[i])
+			box := grown(drawing.Box{Min: at, Max: at}, 1)
+			for _, l := range s.labels {
+				if shared(l.box, box) > 0 && !s.parts[i].isJunction() {
+					t.Errorf("%s: the mark of %s covers a label", what, s.parts[i].id)
+				}
+			}
+		}
+	})
+}

@@ -2,6 +2,7 @@ package figures
 
 import (
 	"math"
+	"slices"
 	"sort"
 
 	"barlitre/circuit/drawing"
@@ -26,11 +27,30 @@ type stub struct {
 	pilot      bool
 }
 
+// routing is what lines were laid for, and how.
+type routing struct {
+	boxes  []drawing.Box
+	nets   []drawing.Net
+	routes []drawing.Route
+}
+
+// same tells whether lines are to be laid for the same places again.
+func (r *routing) same(boxes []drawing.Box, nets []drawing.Net) bool {
+	return r != nil && slices.Equal(r.boxes, boxes) && slices.EqualFunc(r.nets, nets, func(a, b drawing.Net) bool {
+		return a.Type == b.Type && slices.Equal(a.Ports, b.Ports) && slices.Equal(a.Runs, b.Runs)
+	})
+}
+
 // route lays the lines of all nets and cuts them into stretches.
-func (s *Sheet) route() {
+func (s *Sheet) route(before *Sheet) {
 	s.splitShafts()
 	boxes, nets := s.routeInput()
-	routes := drawing.RouteAll(boxes, nets)
+	if before != nil && before.laid.same(boxes, nets) {
+		s.laid = before.laid
+	} else {
+		s.laid = &routing{boxes, nets, drawing.RouteAll(boxes, nets)}
+	}
+	routes := s.laid.routes
 	for i := range routes {
 		s.nets[i].route = routes[i]
 	}
@@ -65,6 +85,7 @@ func (s *Sheet) routeInput() ([]drawing.Box, []drawing.Net) {
 		for _, j := range n.junctions {
 			nets[i].Ports = append(nets[i].Ports, drawing.PlacedPort{Block: -1, At: s.parts[j].at})
 		}
+		nets[i].Runs = s.runsOf(&n)
 	}
 	return boxes, nets
 }

@@ -3,6 +3,7 @@ package figures
 import (
 	"image/color"
 	"math"
+	"slices"
 
 	"barlitre/audit/pen"
 	"barlitre/circuit/drawing"
@@ -13,6 +14,9 @@ import (
 func (d *sheetDrawing) symbols() {
 	for i := range d.parts {
 		p := &d.parts[i]
+		if d.veil.part(i) {
+			continue
+		}
 		shift := d.pistonShift(p)
 		square, tint := d.square(p)
 		for k, q := range p.symbol.Prims {
@@ -25,18 +29,23 @@ func (d *sheetDrawing) symbols() {
 			if q.Part == "piston" || q.Part == "rod" {
 				q = movedPrim(q, shift)
 			}
+			if q.Part == square && square != "" && (q.Kind != drawing.Poly || q.Filled) {
+				d.inForce(q)
+				continue
+			}
 			d.prim(q)
 		}
 		d.motion(p)
 		if level := d.opt.Findings[p.id]; level != "" && !p.copied {
-			d.mark(level, p.body.Min.X-0.1, p.body.Min.Y-0.1, 1)
+			at := d.markPlace(p)
+			d.mark(level, at.X, at.Y, 1)
 		}
 	}
 }
 
 // prim draws one piece of a symbol.
 func (d *sheetDrawing) prim(q drawing.Prim) {
-	line := dashed(symbolLine, d.pal.Ink, q.Style)
+	line := dashed(symbolLine*max(1, d.bold), d.pal.Ink, q.Style)
 	fill := color.NRGBA{}
 	if q.Filled {
 		fill = d.pal.Ink
@@ -58,6 +67,29 @@ func (d *sheetDrawing) prim(q drawing.Prim) {
 		al := [...]pen.Align{drawing.Middle: pen.Center, drawing.Start: pen.Left, drawing.End: pen.Right}[q.Align]
 		d.p.Text(pen.Pt{X: q.C.X, Y: q.C.Y + capHalf*q.H}, q.Text, q.H, d.pal.Ink, al, false)
 	}
+}
+
+// markPlace is where the mark of a finding stands at a block: at the first corner, or
+// middle of a side, where it covers no label.
+func (s *Sheet) markPlace(p *part) drawing.Pt {
+	lo, hi, mid := p.body.Min, p.body.Max, mid(p.body)
+	places := []drawing.Pt{{X: lo.X - 0.1, Y: lo.Y - 0.1}, {X: hi.X + 0.1, Y: lo.Y - 0.1}, {X: lo.X - 0.1, Y: hi.Y + 0.1},
+		{X: hi.X + 0.1, Y: hi.Y + 0.1}, {X: lo.X - 1.2, Y: mid.Y}, {X: hi.X + 1.2, Y: mid.Y}, {X: mid.X, Y: hi.Y + 1.2}, {X: mid.X, Y: lo.Y - 1.2}}
+	for _, at := range places {
+		box := grown(drawing.Box{Min: at, Max: at}, 1)
+		if !slices.ContainsFunc(s.labels, func(l sheetLabel) bool { return shared(l.box, box) > 0 }) {
+			return at
+		}
+	}
+	return places[0]
+}
+
+// inForce draws a way through a valve in its present position: bold, in the colour of
+// its square.
+func (d *sheetDrawing) inForce(q drawing.Prim) {
+	bold := sheetDrawing{p: d.p, pal: d.pal, bold: 1.7}
+	bold.pal.Ink = d.pal.Gain
+	bold.prim(q)
 }
 
 // square names the position of a valve that is in force, and its tint: the further open,

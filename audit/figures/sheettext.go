@@ -23,6 +23,9 @@ func (w word) width() float64 { return pen.TextWidth(w.text, w.size, w.bold) }
 func (d *sheetDrawing) labelTexts() {
 	for i := range d.labels {
 		l := &d.labels[i]
+		if l.part >= 0 && d.veil.part(l.part) || l.part < 0 && d.veil.net(d.stretches[l.stretch].net) {
+			continue
+		}
 		var rows [][]word
 		unused := l.box.Max.Y - l.box.Min.Y
 		for _, r := range l.rows {
@@ -59,6 +62,9 @@ func (d *sheetDrawing) rest(l *sheetLabel) float64 {
 
 // words is what stands in a row of a label now.
 func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
+	if d.opt.hides(Numbers) && r != rowTag && r != rowTagHeat && r != rowValue {
+		return nil
+	}
 	if l.part < 0 {
 		return d.lineWords(&d.stretches[l.stretch], r)
 	}
@@ -84,7 +90,7 @@ func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
 		}
 		return note(p.live(d.st, d.opt.System))
 	}
-	if p.block.Kind == "valve" && d.st != nil {
+	if p.block.Kind == "valve" && d.st != nil && !d.opt.hides(Numbers) {
 		if text := p.live(d.st, d.opt.System); text != "" {
 			return note(text)
 		}
@@ -95,10 +101,10 @@ func (d *sheetDrawing) words(l *sheetLabel, r row) []word {
 // heatWords is the heat of a block, if it counts among the others.
 func (d *sheetDrawing) heatWords(p *part) []word {
 	h := d.st.Heat(p.id)
-	if p.copied || ratio(h, d.most) < heatShown {
+	if p.copied || ratio(h, d.most) < heatShown || d.opt.hides(Numbers) || d.opt.hides(Discs) {
 		return nil
 	}
-	return []word{{text: heatText(h, d.st.Energy, d.opt.System), size: noteSize, c: d.pal.heatText(), bold: true}}
+	return []word{{text: heatText(h, d.st.Energy, d.opt.System), size: noteSize, c: d.warm, bold: true}}
 }
 
 // heatText writes a power or an energy.

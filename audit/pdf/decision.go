@@ -50,10 +50,10 @@ func (l *layout) firstPage(starts map[Section]int) {
 // contents names the page of each section. Before they are known it leaves as much room.
 func (l *layout) contents(starts map[Section]int) {
 	var parts []string
-	for _, s := range append(Sections(), cautionPages) {
+	for _, s := range append(Sections(), cautionPages, Sheets) {
 		n, ok := starts[s]
 		switch {
-		case slices.Contains(l.without, s):
+		case slices.Contains(l.without, s), s == Sheets && l.boards == nil:
 			continue
 		case !ok:
 			n = 10
@@ -107,6 +107,7 @@ func (l *layout) fitted(draw func()) {
 func (l *layout) decision(d *audit.Decision, c *audit.Comparison) {
 	l.heading(1, d.Proposal+" in place of "+d.Base, 40)
 	l.verdict(d.Verdict, c.SavedDrawn)
+	l.besides(d.Proposal)
 	if c.Missing != "" {
 		l.stops(c.Base)
 		l.stops(c.Proposal)

@@ -3,9 +3,10 @@
 // audit.Solution, and the figures are those of the window, drawn by audit/figures.
 //
 // The document opens with one decision page for each proposal, then shows the
-// circuits as drawn with their results, where the energy goes, the duty, heat and
-// cooler, money, every value with its origin, the findings and the method, and ends
-// with the cautions, which cannot be left out.
+// circuits as drawn with their results, where the energy goes, what to put right first
+// (where Options carries it), the duty, heat and cooler, money, every value with its
+// origin, the findings, the site check on a page of its own (where Options carries it)
+// and the method, and ends with the cautions, which cannot be left out.
 //
 // Lengths are in mm, y runs down from the upper edge of a page. Equal solutions,
 // options and dates give equal bytes; the clock is never read. Any text may stand

@@ -4,6 +4,10 @@ import (
 	"slices"
 
 	"barlitre/audit"
+	"barlitre/audit/figures"
+	"barlitre/audit/pen"
+	"barlitre/audit/thermal"
+	"barlitre/machines/units"
 )
 
 // heat prints the heat put into the oil and the cooler it asks for.
@@ -25,7 +29,39 @@ func (l *layout) heat() {
 		}
 	}
 	l.bullets(faults, l.body())
+	l.temperatures()
 	l.calculations("How these figures come about", of)
+}
+
+// temperatures prints how warm the oil gets, where the file says enough of tank and cooler.
+func (l *layout) temperatures() {
+	if len(l.r.Warmth) == 0 {
+		l.para("How warm the oil gets is not worked out: the file says nothing of tank and cooler, or not enough.", l.small())
+		return
+	}
+	u := units.Preferred(units.Temperature, l.r.System)
+	days, start := figures.StudyLanes(l.s.Circuits)
+	var limits []figures.HeatLimit
+	for _, c := range l.s.Circuits {
+		if c.Warmth != nil && c.Warmth.Week != nil {
+			limits = figures.HeatLimits(c.Warmth, l.degrees)
+			break
+		}
+	}
+	draw := func(title string, f figures.Plot) {
+		high := func(w float64) float64 { return f.Height(w) + 50*float64(len(f.Lanes)) }
+		l.heading(3, title, 2+figureLeast*high(fullW/figureLeast))
+		l.figure(high, func(p pen.Pen, w, h float64) { f.Draw(p, w, h, l.pal) })
+		l.y += 2 * l.sheet.room
+	}
+	week := figures.TemperaturePlot(days, limits, u, 0, thermal.Week)
+	week.Phases = figures.Weekdays()
+	draw("Oil over the week that repeats itself", week)
+	span := start.Courses[0].Course.T
+	draw("Oil after a cold start", figures.TemperaturePlot([]figures.TemperatureLane{start}, limits, u, 0, span[len(span)-1]))
+	for _, t := range l.r.Warmth {
+		l.table(fromReport(t))
+	}
 }
 
 // money prints the year's bill, and what each proposal brings and costs.

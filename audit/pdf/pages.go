@@ -13,9 +13,10 @@ const (
 	PageHeight = pageH
 )
 
-// Pages draws the pages that Write writes, on pens that page makes, one call a page,
-// 1 user unit = 1 mm. It returns on which page each section begins, from 1.
-func Pages(s *audit.Solution, opt Options, page func() pen.Pen) (map[Section]int, error) {
+// Pages draws the pages that Write writes, on pens that page makes, one call a page with
+// its width and height, 1 user unit = 1 mm. It returns on which page each section begins,
+// from 1.
+func Pages(s *audit.Solution, opt Options, page func(w, h float64) pen.Pen) (map[Section]int, error) {
 	if s == nil || s.File == nil {
 		return nil, errors.New("show report: there is no solved audit to show")
 	}
@@ -26,8 +27,10 @@ func Pages(s *audit.Solution, opt Options, page func() pen.Pen) (map[Section]int
 }
 
 // pens is paper made by a function.
-type pens func() pen.Pen
+type pens func(w, h float64) pen.Pen
 
-func (p pens) page() pen.Pen { return p() }
+func (p pens) page() pen.Pen { return p(pageW, pageH) }
+
+func (p pens) lying(on Paper) pen.Pen { return p(on.W, on.H) }
 
 func (pens) mark(string, int, float64) {}

@@ -13,7 +13,7 @@ func TestPagesAreThoseOfTheDocument(t *testing.T) {
 	s := solve(t, read(t))
 	opt := Options{Date: day, Without: []Section{Parameters}}
 	var pages []*pen.Recorder
-	starts, err := Pages(s, opt, func() pen.Pen {
+	starts, err := Pages(s, opt, func(w, h float64) pen.Pen {
 		pages = append(pages, pen.NewRecorder())
 		return pages[len(pages)-1]
 	})

@@ -12,7 +12,9 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/figures"
+	"barlitre/audit/fixfirst"
 	"barlitre/audit/pen"
+	"barlitre/audit/sitecheck"
 	"barlitre/machines/units"
 )
 
@@ -25,21 +27,28 @@ const (
 	Basis      Section = "What the figures rest on"
 	Circuits   Section = "Circuits"
 	Energy     Section = "Where the energy goes"
+	FixFirst   Section = "What to put right first"
 	Machines   Section = "Machines and drives"
 	Duty       Section = "Duty and course over time"
 	Heat       Section = "Heat and cooler"
+	Request    Section = "Cooler request sheet"
 	Money      Section = "Money"
 	Parameters Section = "Values and where they come from"
 	Findings   Section = "Findings"
+	SiteCheck  Section = "Site check"
 	Method     Section = "Method and certificate"
 )
+
+// Sheets is the section of the circuits on pages of their own; it is there when Options
+// ask for it.
+const Sheets Section = "Circuit sheets"
 
 // cautionPages is the section that cannot be left out.
 const cautionPages Section = "Cautions and limits of use"
 
 // Sections lists all sections in the order of printing; the slice is the caller's.
 func Sections() []Section {
-	return []Section{Decision, Basis, Circuits, Energy, Machines, Duty, Heat, Money, Parameters, Findings, Method}
+	return []Section{Decision, Basis, Circuits, Energy, FixFirst, Machines, Duty, Heat, Request, Money, Parameters, Findings, SiteCheck, Method}
 }
 
 // Options of Write; only Date is needed.
@@ -47,6 +56,10 @@ type Options struct {
 	System  units.System
 	Date    time.Time // of the report, printed and written into the document
 	Without []Section // left out
+	Sheets  *View     // the circuits on pages of their own at the end; nil = none
+
+	FixFirst  []fixfirst.Page   // of the circuits as found; without them their section is left out
+	SiteCheck []*sitecheck.Plan // the same
 
 	Customer, Site, Author string // in place of those of the audit file; "" keeps them
 }
@@ -58,6 +71,11 @@ func Write(w io.Writer, s *audit.Solution, opt Options) error { return write(w, 
 func write(w io.Writer, s *audit.Solution, opt Options, compress bool) error {
 	if s == nil || s.File == nil {
 		return errors.New("write report: there is no solved audit to print")
+	}
+	if opt.Sheets != nil {
+		if _, err := newBoards(s.File, s, *opt.Sheets, opt); err != nil {
+			return fmt.Errorf("write report: %w", err)
+		}
 	}
 	l := newLayout(s, opt)
 	l.choose()
@@ -80,7 +98,8 @@ func write(w io.Writer, s *audit.Solution, opt Options, compress bool) error {
 
 // paper is what a sheet prints on: the document, or recorders that are measured.
 type paper interface {
-	page() pen.Pen // begins a page
+	page() pen.Pen         // begins an upright A4 page
+	lying(p Paper) pen.Pen // begins a lying page
 	mark(title string, level int, y float64)
 }
 
@@ -118,22 +137,35 @@ type layout struct {
 	date    string
 
 	site, customer, author string
+	fix                    []fixfirst.Page
+	plans                  []*sitecheck.Plan
 
 	room   float64         // share of the usual space between things
 	total  int             // pages in all, as the last printing found them
 	starts map[Section]int // page on which a section starts
 	drawn  *drawings       // nil before they are asked for
+	boards *boards         // nil when there are none
 
 	pictures map[int][]figures.Picture // of the machines, by circuit
 }
 
 func newLayout(s *audit.Solution, opt Options) *layout {
 	l := &layout{s: s, r: s.Report(opt.System), without: opt.Without, date: opt.Date.Format("2006-01-02"),
-		site: opt.Site, customer: opt.Customer, author: opt.Author, room: 1, pictures: map[int][]figures.Picture{}}
+		site: opt.Site, customer: opt.Customer, author: opt.Author, fix: opt.FixFirst, plans: opt.SiteCheck, room: 1, pictures: map[int][]figures.Picture{}}
+	l.without = slices.Clone(l.without)
+	if len(l.fix) == 0 {
+		l.without = append(l.without, FixFirst)
+	}
+	if len(l.plans) == 0 {
+		l.without = append(l.without, SiteCheck)
+	}
 	for own, file := range map[*string]string{&l.site: l.r.Site.Name, &l.customer: l.r.Site.Customer, &l.author: l.r.Site.Author} {
 		if *own == "" {
 			*own = file
 		}
+	}
+	if opt.Sheets != nil {
+		l.boards, _ = newBoards(s.File, s, *opt.Sheets, opt)
 	}
 	return l
 }
@@ -187,11 +219,14 @@ func (l *layout) print(to paper) {
 		Section
 		draw func()
 	}{
-		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat},
-		{Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {Method, l.method},
+		{Decision, l.decisions}, {Basis, l.basis}, {Circuits, l.circuits}, {Energy, l.energy}, {FixFirst, l.fixFirst}, {Machines, l.machines}, {Duty, l.duties}, {Heat, l.heat},
+		{Request, l.requests}, {Money, l.money}, {Parameters, l.parameters}, {Findings, l.findings}, {SiteCheck, l.siteCheck}, {Method, l.method},
 	} {
 		if slices.Contains(l.without, part.Section) {
 			continue
+		}
+		if (part.Section == Request && l.asks() || part.Section == SiteCheck) && !l.fresh() {
+			l.newPage() // these go to someone else, or are taken along alone
 		}
 		if part.Section != Decision {
 			l.heading(1, string(part.Section), l.follow(part.Section))
@@ -201,10 +236,19 @@ func (l *layout) print(to paper) {
 		if part.Section == Decision && len(l.r.Decisions) > 0 {
 			l.newPage() // what is signed stands by itself
 		}
+		if part.Section == SiteCheck && !l.fresh() {
+			l.newPage()
+		}
 	}
 	l.cautions()
 	l.finish()
 	l.total = l.number
+	if l.boards != nil {
+		l.starts[Sheets] = l.number + 1
+		l.total += len(l.boards.all)
+		l.boards.before, l.boards.pages = l.number, l.total
+		l.boards.print(to)
+	}
 }
 
 // follow returns the height of what stays with the heading of a section.

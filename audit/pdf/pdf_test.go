@@ -199,8 +199,10 @@ func TestSectionsCanBeLeftOut(t *testing.T) {
 	if !strings.Contains(all, string(cautionPages)) || !strings.Contains(all, s.Report(units.Metric).Cautions[0].Topic) {
 		t.Error("the cautions are missing")
 	}
+	advice := adviceOf(t, s)
 	for _, section := range Sections() {
-		rest := newLayout(s, Options{Date: day, Without: []Section{section}})
+		advice.Without = []Section{section}
+		rest := newLayout(s, advice)
 		rest.choose()
 		rest.print(&recorders{})
 		if _, there := rest.starts[section]; there || len(rest.starts) != len(Sections()) {

@@ -19,11 +19,11 @@
 // step. The start is foretold from up to six solutions (past.go), so that in a smooth
 // duty one Newton step does; in a rough one a last step is taken with the factors at
 // hand. The elimination is worked out once for each set of active bounds and replayed
-// on the entries that the slopes have (plan.go, slopes.go). Numbers known in advance
-// stand before the unknowns (Border), so that the problem never asks which is which.
-// Where a plan does not serve, the dense factors of the unknowns off their bounds do;
-// that, and finding plans, is what a change of direction costs. Only plans are allocated
-// on the way.
+// on the entries that the slopes have and that are not zero (plan.go, slopes.go). Numbers
+// known in advance stand before the unknowns (Border), so that the problem never asks which
+// is which. Where a plan does not serve, the dense factors of the unknowns off their bounds
+// do; that, and finding plans, is what a change of direction costs. Only plans are
+// allocated on the way, and their room is used again when there are too many.
 //
 // Sources: Facchinei and Pang, Finite-Dimensional Variational Inequalities and
 // Complementarity Problems, Springer 2003, ch. 8-9; Billups, Algorithms for

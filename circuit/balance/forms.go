@@ -81,43 +81,35 @@ func (s *Solver) norm(p Problem, x []float64, a aim, slopes bool) float64 {
 
 // residual is the min/max form. It also notes which unknowns rest on a bound.
 func (s *Solver) residual(x []float64) {
-	g := s.g
-	n := len(g)
-	x, lo, hi, weight, out := x[:n], s.Lo[:n], s.Hi[:n], s.Weight[:n], s.r[:n]
-	word := uint64(0)
-	for i, r := range g {
-		w, l, h := weight[i], x[i]-lo[i], x[i]-hi[i]
-		if dl, dh := w*l, w*h; !(dl >= r && dh <= r && l != h) { // most unknowns lie between their bounds
-			if dl < r || l == h {
-				r = dl
-				word |= 1 << (uint(i) & 63)
-			}
-			if dh > r {
-				r = dh
-				word |= 1 << (uint(i) & 63)
-			}
-		}
-		out[i] = r
-		if i&63 == 63 {
-			s.plans.key[i>>6], word = word, 0
-		}
+	n, sum := len(s.g), 0.0
+	for k, at := 0, 0; at < n; k, at = k+1, at+64 {
+		to := min(at+64, n)
+		more, word := minmaxRows(x[at:to], s.g[at:to], s.Lo[at:to], s.Hi[at:to], s.Weight[at:to], s.r[at:to])
+		s.plans.key[k] = word
+		sum += more
 	}
-	if n&63 != 0 {
-		s.plans.key[n>>6] = word
-	}
-	s.setNorm(squares(out))
+	s.setNorm(sum)
 }
 
-// squares is the sum of squares, in four parts that do not wait for each other.
-func squares(v []float64) float64 {
-	var a, b, c, d float64
-	for ; len(v) >= 4; v = v[4:] {
-		a, b, c, d = a+v[0]*v[0], b+v[1]*v[1], c+v[2]*v[2], d+v[3]*v[3]
+// minmaxRows is minmax for up to 64 rows. It returns the sum of squares, and the rows on a bound as bits.
+func minmaxRows(x, g, lo, hi, weight, out []float64) (sum float64, word uint64) {
+	x, lo, hi, weight, out = x[:len(g)], lo[:len(g)], hi[:len(g)], weight[:len(g)], out[:len(g)]
+	other := 0.0 // the sum in two parts that do not wait for each other
+	for i, r := range g {
+		w, v := weight[i], x[i]
+		l, h := w*(v-lo[i]), w*(v-hi[i])
+		if l < r || l == h {
+			r = l
+			word |= 1 << (uint(i) & 63)
+		}
+		if h > r {
+			r = h
+			word |= 1 << (uint(i) & 63)
+		}
+		out[i] = r
+		sum, other = other, sum+r*r
 	}
-	for _, x := range v {
-		a += x * x
-	}
-	return (a + b) + (c + d)
+	return sum + other, word
 }
 
 func (s *Solver) smoothResidual(x []float64, a aim) {

@@ -193,7 +193,7 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 		if norm < ref || norm == 0 {
 			return norm
 		}
-		if planned && k == 0 { // the safer factors first
+		if planned && k == 0 && !s.plans.last.sure(s.plans.work) { // the safer factors first
 			planned = false
 			copy(x, s.xt)
 			s.norm(p, x, a, true)

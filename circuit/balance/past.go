@@ -35,22 +35,32 @@ func (p *past) guess(x, lo, hi []float64) bool {
 	s := &ahead[p.order]
 	a := p.x[0]
 	n := len(a)
-	b, c, d, e, f := p.x[1][:n], p.x[2][:n], p.x[3][:n], p.x[4][:n], p.x[5][:n]
-	x, lo, hi = x[:n], lo[:n], hi[:n]
+	b, c, d, x, lo, hi := p.x[1][:n], p.x[2][:n], p.x[3][:n], x[:n], lo[:n], hi[:n]
+	if p.order <= 3 {
+		for i, v := range a {
+			if x[i] == v {
+				x[i] = within((s[0]*v+s[1]*b[i])+(s[2]*c[i]+s[3]*d[i]), lo[i], hi[i])
+			}
+		}
+		return true
+	}
+	e, f := p.x[4][:n], p.x[5][:n]
 	for i, v := range a {
-		if x[i] != v {
-			continue
+		if x[i] == v {
+			x[i] = within((s[0]*v+s[1]*b[i])+(s[2]*c[i]+s[3]*d[i])+(s[4]*e[i]+s[5]*f[i]), lo[i], hi[i])
 		}
-		v = (s[0]*v + s[1]*b[i]) + (s[2]*c[i] + s[3]*d[i]) + (s[4]*e[i] + s[5]*f[i])
-		if v < lo[i] {
-			v = lo[i]
-		}
-		if v > hi[i] {
-			v = hi[i]
-		}
-		x[i] = v
 	}
 	return true
+}
+
+func within(v, lo, hi float64) float64 {
+	if v < lo {
+		return lo
+	}
+	if v > hi {
+		return hi
+	}
+	return v
 }
 
 // keep takes a solution. At every sixteenth, and when the last start was poor, it finds

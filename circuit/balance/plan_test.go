@@ -17,8 +17,9 @@ func TestPlanAgainstLibrary(t *testing.T) {
 		n := 1 + r.IntN(90)
 		j, key := newSlopes(n), make([]uint64, (n+63)/64)
 		add := func(i, k int) {
-			j.Add(i, k, 0)
-			j.place((i+j.known)*j.side + k + j.known)
+			if at := i*j.side + k + j.zero; j.at[at] == noPlace {
+				j.place(at)
+			}
 		}
 		for i := range n {
 			add(i, i)
@@ -35,16 +36,17 @@ func TestPlanAgainstLibrary(t *testing.T) {
 			}
 		}
 		draw()
-		p := newPlanner(n).make(j, key)
+		var p plan
+		newPlanner(n).make(&p, j, key, true)
 		if !p.sparse {
 			continue
 		}
 		draw()
 		work := make([]float64, p.size)
-		if !p.run(j.val, work) {
+		if !p.run(n, j.val, work) {
 			continue // a pivot became small: the solver takes the dense factors
 		}
-		a, b, dx, rhs := mat.NewDense(n, n, nil), make([]float64, n), make([]float64, n), make([]float64, n)
+		a, b, dx, rhs := mat.NewDense(n, n, nil), work[:n], work[n:2*n], make([]float64, n)
 		for i := range n {
 			b[i] = r.Float64() - 0.5
 			rhs[i] = -b[i]
@@ -64,7 +66,7 @@ func TestPlanAgainstLibrary(t *testing.T) {
 		if lib.Cond() > 1e6 || lib.SolveVecTo(&want, false, mat.NewVecDense(n, rhs)) != nil {
 			continue
 		}
-		p.solve(j.val, work, b, dx, true)
+		p.solve(j.val, work, true)
 		for i := range dx {
 			if d := math.Abs(dx[i] - want.AtVec(i)); d > 1e-7*mat.Norm(&want, math.Inf(1)) {
 				t.Fatalf("seed %d, n = %d: step %d is %g, gonum %g", seed, n, i, dx[i], want.AtVec(i))
@@ -108,5 +110,58 @@ func TestForetoldStart(t *testing.T) {
 				t.Fatalf("step %d: x[%d] = %g warm, %g cold", k, i, x[i], y[i])
 			}
 		}
+	}
+}
+
+// A plan that counts on an entry being zero is not used where it is not.
+func TestLeanPlanCountsOnZeros(t *testing.T) {
+	j, ps := newSlopes(2), newPlans(2)
+	for i := range j.at {
+		j.place(i)
+	}
+	set := func(a, b, c, d float64) { copy(j.val[firstEntry:], []float64{a, b, c, d}) }
+	set(2, 0, 1, 4)
+	lean := ps.get(j)
+	set(2, 3, 1, 4)
+	if full := ps.get(j); full == lean || len(full.none) != 0 {
+		t.Error("the plan for a triangular matrix serves a full one")
+	}
+}
+
+// More sets of bounds than there is room for plans: answers are those of a fresh solver.
+func TestManyPlans(t *testing.T) {
+	const n = 14
+	r := rand.New(rand.NewPCG(5, 5))
+	c := make([]float64, n)
+	f := problem{n, func(x, g []float64) {
+		for i := range g {
+			g[i] = 3*x[i] - x[(i+1)%n] + 0.5*x[(i+5)%n]*x[(i+5)%n] - c[i]
+		}
+	}}
+	set := func() *Solver {
+		s := NewSolver(n)
+		for i := range n {
+			s.Lo[i], s.Hi[i] = 0, 1
+		}
+		return s
+	}
+	cold := func(_ int, x []float64) { clear(x) }
+	warm, x := set(), make([]float64, n)
+	for range 3000 {
+		for i := range c {
+			c[i] = 12 * (r.Float64() - 0.5)
+		}
+		y := make([]float64, n)
+		if !warm.Solve(f, x, 3, cold).Solved() || !set().Solve(f, y, 3, cold).Solved() {
+			t.Fatal("not solved")
+		}
+		for i := range x {
+			if math.Abs(x[i]-y[i]) > 1e-9 {
+				t.Fatalf("x[%d] = %g, from a fresh solver %g", i, x[i], y[i])
+			}
+		}
+	}
+	if len(warm.plans.made) != mostPlans {
+		t.Errorf("%d plans were made: the room for %d was never used up", len(warm.plans.made), mostPlans)
 	}
 }

@@ -1,5 +1,7 @@
 package balance
 
+import "math"
+
 // Slopes is the Jacobian of G: a square matrix of which only the entries are
 // kept that were ever added to.
 type Slopes struct {
@@ -8,9 +10,7 @@ type Slopes struct {
 	at         []int32 // (known+n)²: index into val
 	side, zero int     // known+n, and the place of row 0, column 0 in it
 	val        []float64
-	row, col   []int32  // of each entry
-	missed     [100]int // places that are not there yet
-	misses     int
+	row, col   []int32 // of each entry
 }
 
 // The first entries take what has no place yet, and what counts for nothing.
@@ -42,40 +42,53 @@ func (j *Slopes) border(known int) {
 }
 
 // Add adds v to the derivative of row r by unknown c. Rows and columns of known
-// numbers, which are below 0, are passed over.
+// numbers, which are below 0, are passed over, and so are numbers that are not there.
 func (j *Slopes) Add(r, c int, v float64) {
-	i := r*j.side + c + j.zero
-	if uint(i) >= uint(len(j.at)) { // a number that is not there
-		return
+	if i := uint(r*j.side + c + j.zero); i < uint(len(j.at)) {
+		j.val[j.at[i]] += v
 	}
-	k := j.at[i]
-	if k == noPlace && j.misses < len(j.missed) {
-		j.missed[j.misses] = i
-		j.misses++
-	}
-	j.val[k] += v
 }
 
-// eval evaluates p with slopes, again until every entry has its place.
+// untouched is −0: no sum that anything but −0 was added to is it.
+var untouched = math.Copysign(0, -1)
+
+// touched reports whether anything was added to what began as untouched.
+func touched(v float64) bool { return math.Float64bits(v) != 1<<63 }
+
+// eval evaluates p with slopes, again where an entry had no place.
 func (j *Slopes) eval(p Problem, x, g []float64) {
-	for {
+	clear(j.val)
+	j.val[noPlace] = untouched
+	p.Eval(x, g, j)
+	if touched(j.val[noPlace]) {
+		j.grow(p, x, g)
 		clear(j.val)
 		p.Eval(x, g, j)
-		if j.misses == 0 {
-			return
-		}
-		for _, i := range j.missed[:j.misses] {
-			j.place(i)
-		}
-		j.misses = 0
 	}
 }
 
-// place makes room for an entry that was missed, perhaps more than once.
-func (j *Slopes) place(i int) {
-	if j.at[i] != noPlace {
-		return
+// grow gives a place to every entry that p adds to at x.
+func (j *Slopes) grow(p Problem, x, g []float64) {
+	at, val := j.at, j.val
+	j.at, j.val = append([]int32(nil), at...), append([]float64(nil), val...)
+	for i, k := range at {
+		if k == noPlace { // a place of its own, for this once
+			j.at[i] = int32(len(j.val))
+			j.val = append(j.val, untouched)
+		}
 	}
+	p.Eval(x, g, j)
+	tried, sums := j.at, j.val
+	j.at, j.val = at, val
+	for i, k := range at {
+		if k == noPlace && touched(sums[tried[i]]) {
+			j.place(i)
+		}
+	}
+}
+
+// place makes room for an entry.
+func (j *Slopes) place(i int) {
 	j.at[i] = int32(len(j.val))
 	j.val = append(j.val, 0)
 	j.row, j.col = append(j.row, int32(i/j.side-j.known)), append(j.col, int32(i%j.side-j.known))

@@ -35,6 +35,8 @@ type field struct {
 	knots        []int16 // per node: corners, dots and ports
 	exits        []int16 // per node: what makes it a bad place to cross, in units of costExit
 	own          []int8  // per node: ports of the net being routed, see openAny
+	ports        []int16 // per node: ports, those of the net being routed left out
+	window       Box     // where a way is looked for
 	scratch      search
 }
 
@@ -56,6 +58,9 @@ func newField(blocks []Box, nets []Net) (*field, bool) {
 		for _, p := range n.Ports {
 			all = all.with(p.At)
 		}
+		for _, r := range n.Runs {
+			all = all.with(r[0]).with(r[1])
+		}
 	}
 	width, height := all.Max.X-all.Min.X+2*margin+2, all.Max.Y-all.Min.Y+2*margin+2
 	if !(width > 0 && height > 0 && width*height <= maxNodes) {
@@ -69,7 +74,7 @@ func newField(blocks []Box, nets []Net) (*field, bool) {
 	n := f.w * f.h
 	f.block, f.used = make([]int32, 2*n), make([]int16, 2*n)
 	f.knots, f.exits = make([]int16, n), make([]int16, n)
-	f.own = make([]int8, n)
+	f.own, f.ports = make([]int8, n), make([]int16, n)
 	f.scratch.init(4 * n)
 	for _, b := range blocks {
 		f.put(b)
@@ -147,6 +152,7 @@ func (f *field) markPorts(n Net, by int16) {
 	for _, p := range n.Ports {
 		node := f.node(p.At)
 		f.knots[node] += by
+		f.ports[node] += by
 		if d := dirOf(p.Dir); d >= 0 {
 			f.exits[node+f.delta[d]] += by
 		}
@@ -166,6 +172,30 @@ func (f *field) mark(t tree, by int16) {
 			f.exits[node] += 4 * by
 		}
 	}
+}
+
+// meets tells whether a net that is laid crosses another, or lies on one.
+func (f *field) meets(t tree) bool {
+	for _, e := range t.edges {
+		if f.used[e] > 1 {
+			return true
+		}
+	}
+	for _, node := range t.nodes {
+		out, degree := t.lines(f, node)
+		if across := degree == 2 && out[right] == out[left]; !across && f.knots[node] > 1 || across && (f.knots[node] > 0 || f.occupied(node, boolAxis(out[right]))) {
+			return true
+		}
+	}
+	return false
+}
+
+// boolAxis is the axis across a line that runs level, or upright.
+func boolAxis(level bool) int {
+	if level {
+		return 1
+	}
+	return 0
 }
 
 // occupied tells whether a line lies on node along the axis, 0 = x, 1 = y.

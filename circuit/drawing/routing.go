@@ -12,11 +12,13 @@ type PlacedPort struct {
 	At, Dir Pt // Dir away from the block; zero if any direction will do
 }
 
-// Net is a set of ports that are to be joined.
+// Net is a set of ports that are to be joined. Runs are pieces of line that were laid by
+// hand, each upright or level: the net passes along them as far as its ports need it.
 type Net struct {
 	Name  string
 	Type  PortType
 	Ports []PlacedPort
+	Runs  [][2]Pt
 }
 
 // Route is the drawn connection of one net.
@@ -53,7 +55,8 @@ const (
 // the module grid. Lines leave a port in its direction, keep out of the blocks
 // and avoid each other; the answer has one Route per net, in the order of nets,
 // and is the same for the same input. It does not fail: where there is no
-// free way the route is marked Through.
+// free way the route is marked Through. Runs laid by hand are kept where they meet
+// neither the inside of a block nor a port of another net.
 func RouteAll(blocks []Box, nets []Net) []Route {
 	routes := make([]Route, len(nets))
 	f, ok := newField(blocks, nets)
@@ -65,9 +68,12 @@ func RouteAll(blocks []Box, nets []Net) []Route {
 	}
 	trees := make([]tree, len(nets))
 	order := routingOrder(nets)
-	// The second round lets the nets laid first make way for the later ones.
+	// The second round lets the nets laid first make way for the later ones, where they meet.
 	for round := 0; round < 2; round++ {
 		for _, i := range order {
+			if round > 0 && !f.meets(trees[i]) {
+				continue
+			}
 			f.mark(trees[i], -1)
 			trees[i] = f.grow(nets[i])
 			f.mark(trees[i], +1)
@@ -79,8 +85,9 @@ func RouteAll(blocks []Box, nets []Net) []Route {
 	return routes
 }
 
-// routingOrder: mechanical and electric links first, since they should be
-// straight, then oil, pilot and drain lines; short nets before long ones.
+// routingOrder: what was laid by hand first, so that the others make way; then mechanical
+// and electric links, since they should be straight, then oil, pilot and drain lines;
+// short nets before long ones.
 func routingOrder(nets []Net) []int {
 	rank := map[PortType]int{Shaft: 0, Rod: 0, Electric: 0, Oil: 1, PilotLine: 2, DrainLine: 3}
 	order := make([]int, len(nets))
@@ -92,6 +99,9 @@ func routingOrder(nets []Net) []int {
 	}
 	sort.SliceStable(order, func(a, b int) bool {
 		i, j := order[a], order[b]
+		if bent := len(nets[i].Runs) > 0; bent != (len(nets[j].Runs) > 0) {
+			return bent
+		}
 		if rank[nets[i].Type] != rank[nets[j].Type] {
 			return rank[nets[i].Type] < rank[nets[j].Type]
 		}

@@ -89,9 +89,34 @@ func (s *search) take() entry {
 	return top
 }
 
+// around is how far beside its ports a way is looked for first [M].
+const around = 20
+
 // path finds the cheapest way from the tree to one of the open ports, as
-// nodes from the tree's end on; nil if there is none.
+// nodes from the tree's end on; nil if there is none. It is looked for near the ports,
+// and farther away only when what is found there is poor: large sheets take the
+// time that their lines need, not that of their area.
 func (f *field) path(t *tree, open []terminal) []int {
+	f.window = f.goalBox(open)
+	for node := range t.ports {
+		f.window = f.window.with(f.at(node))
+	}
+	ports := f.window
+	f.window = ports.grown(around)
+	way, cost := f.pathInside(t, open)
+	if way != nil && cost < costKnot+costStep*int32(len(way)) {
+		return way
+	}
+	f.window = ports.grown(3 * around)
+	if way, cost = f.pathInside(t, open); way != nil && cost < costInside {
+		return way
+	}
+	f.window = Box{f.at(0), f.at(f.w*f.h - 1)}
+	way, _ = f.pathInside(t, open)
+	return way
+}
+
+func (f *field) pathInside(t *tree, open []terminal) (way []int, cost int32) {
 	s := &f.scratch
 	s.begin()
 	goal := f.goalBox(open)
@@ -99,14 +124,19 @@ func (f *field) path(t *tree, open []terminal) []int {
 	for {
 		state := s.pop()
 		if state < 0 {
-			return nil
+			return nil, 0
 		}
 		node, d := int(state/4), int(state%4)
 		if s.from[state] >= 0 && f.arrives(node, d) {
-			return f.trace(state)
+			return f.trace(state), s.cost[state]
 		}
 		f.expand(state, node, d, goal)
 	}
+}
+
+func (f *field) inWindow(node int) bool {
+	p, w := f.at(node), &f.window
+	return p.X >= w.Min.X && p.X <= w.Max.X && p.Y >= w.Min.Y && p.Y <= w.Max.Y
 }
 
 // arrives tells whether a line that comes to node in direction d ends there
@@ -123,7 +153,7 @@ func (f *field) expand(state int32, node, d int, goal Box) {
 			continue
 		}
 		next := f.neighbour(node, out)
-		if next < 0 {
+		if next < 0 || !f.inWindow(next) {
 			continue
 		}
 		cost := s.cost[state] + f.stepCost(node, out, next)
@@ -133,18 +163,26 @@ func (f *field) expand(state int32, node, d int, goal Box) {
 		if f.own[next] != 0 && !f.arrives(next, out) {
 			cost += costKnot
 		}
-		s.offer(int32(4*next+out), state, cost, f.ahead(next, goal))
+		s.offer(int32(4*next+out), state, cost, f.ahead(next, out, goal))
 	}
 }
 
-// offerStarts begins at the first port while there is no line yet, and then
-// at every node of the lines laid so far except at the ports themselves.
+// offerStarts begins at the first port while there is no line yet, and then at every
+// node of the lines laid so far except at the ports themselves; at these too where the
+// lines consist of nothing else, as between two ports that face each other a step apart.
 func (f *field) offerStarts(t *tree, goal Box) {
+	f.offerFrom(t, goal, false)
+	if len(f.scratch.heap) == 0 {
+		f.offerFrom(t, goal, true)
+	}
+}
+
+func (f *field) offerFrom(t *tree, goal Box, atPorts bool) {
 	s := &f.scratch
-	for _, node := range t.nodes {
+	for _, node := range t.starts() {
 		port, isPort := t.ports[node]
 		for d := 0; d < 4; d++ {
-			if isPort && port.dir >= 0 && (len(t.edges) > 0 || d != port.dir) {
+			if isPort && port.dir >= 0 && (len(t.edges) > 0 || d != port.dir) && !atPorts {
 				continue
 			}
 			if next := f.neighbour(node, d); next < 0 || t.has[f.edge(node, d)] {
@@ -154,7 +192,7 @@ func (f *field) offerStarts(t *tree, goal Box) {
 			if len(t.edges) > 0 {
 				cost = costTee + f.turnCost(node)
 			}
-			s.offer(int32(4*node+d), -1, cost, f.ahead(node, goal))
+			s.offer(int32(4*node+d), -1, cost, f.ahead(node, d, goal))
 		}
 	}
 }
@@ -179,11 +217,21 @@ func (f *field) goalBox(open []terminal) Box {
 	return b
 }
 
-// ahead is a lower bound of the cost still to come: the plain way to the
-// box round all goals.
-func (f *field) ahead(node int, goal Box) int32 {
+// ahead is a lower bound of the cost still to come: the plain way to the box round all
+// goals, and the bends that it takes when entered in direction d.
+func (f *field) ahead(node, d int, goal Box) int32 {
 	p := f.at(node)
 	dx := max(goal.Min.X-p.X, p.X-goal.Max.X, 0)
 	dy := max(goal.Min.Y-p.Y, p.Y-goal.Max.Y, 0)
-	return int32(costStep * (dx + dy))
+	cost := int32(costStep * (dx + dy))
+	if d&1 == 0 && dy > 0 || d&1 == 1 && dx > 0 {
+		cost += costBend
+	}
+	if d == right && p.X > goal.Max.X || d == left && p.X < goal.Min.X || d == down && p.Y > goal.Max.Y || d == up && p.Y < goal.Min.Y {
+		cost += costBend
+		if d&1 == 0 && dy == 0 || d&1 == 1 && dx == 0 {
+			cost += costBend
+		}
+	}
+	return cost
 }

@@ -14,6 +14,7 @@ type tree struct {
 	on    map[int]bool // nodes
 	ports map[int]terminal
 	stiff bool // shaft or rod: lines should go round it
+	bent  int  // how many nodes, the first ones, belong to what was laid by hand
 }
 
 func (f *field) terminals(n Net) []terminal {
@@ -32,7 +33,7 @@ func (f *field) terminals(n Net) []terminal {
 }
 
 // grow joins the ports of a net, each by the cheapest way to what is there,
-// nearest first.
+// nearest first. What was laid by hand is there from the beginning.
 func (f *field) grow(n Net) tree {
 	f.markPorts(n, -1) // a net does not avoid its own ports
 	defer f.markPorts(n, +1)
@@ -40,26 +41,41 @@ func (f *field) grow(n Net) tree {
 	open := f.terminals(n)
 	for _, p := range open {
 		t.ports[p.node] = p
+	}
+	f.layRuns(&t, n.Runs)
+	for _, p := range open {
 		f.own[p.node] = int8(1 + p.dir)
 		if p.dir < 0 {
 			f.own[p.node] = openAny
 		}
+		if t.on[p.node] {
+			f.own[p.node] = joined
+		}
 		defer func() { f.own[p.node] = 0 }()
 	}
-	if len(open) > 0 {
+	if len(open) > 0 && t.bent == 0 {
 		f.join(&t, open[0].node)
 	}
-	for {
-		open = t.unreached(open)
-		if len(open) == 0 {
-			return t
-		}
+	for open = t.unreached(open); len(open) > 0; open = t.unreached(open) {
 		way := f.path(&t, open)
 		if way == nil {
-			return t // not met: the grid is in one piece and has room before every port
+			break // not met: the grid is in one piece and has room before every port
 		}
 		f.addWay(&t, way)
 	}
+	if t.bent > 0 {
+		f.prune(&t)
+	}
+	return t
+}
+
+// starts are the nodes that a further line may begin at: of a net that was bent by hand
+// only those laid by hand, or ports would be joined past them.
+func (t *tree) starts() []int {
+	if t.bent > 0 {
+		return t.nodes[:t.bent]
+	}
+	return t.nodes
 }
 
 func (t *tree) unreached(open []terminal) []terminal {
@@ -93,11 +109,19 @@ func (f *field) addWay(t *tree, way []int) {
 		}
 	}
 	for i := first + 1; i < len(way); i++ {
-		e := 2*min(way[i-1], way[i]) + f.axis(way[i-1], way[i])
-		t.has[e] = true
-		t.edges = append(t.edges, e)
-		f.join(t, way[i])
+		f.lay(t, 2*min(way[i-1], way[i])+f.axis(way[i-1], way[i]))
 	}
+}
+
+// lay adds an edge with its nodes.
+func (f *field) lay(t *tree, e int) {
+	if t.has[e] {
+		return
+	}
+	t.has[e] = true
+	t.edges = append(t.edges, e)
+	f.join(t, e/2)
+	f.join(t, e/2+f.delta[e&1])
 }
 
 // axis is 0 for neighbours in x, 1 for neighbours in y.

@@ -3,6 +3,7 @@
 package stationtest
 
 import (
+	"slices"
 	"strings"
 	"testing"
 	"time"
@@ -21,21 +22,23 @@ import (
 
 // Context remembers what a station said and did.
 type Context struct {
-	T         *testing.T
-	Document  *document.Document
-	Win       fyne.Window
-	Units     units.System
-	Comma     bool
-	Dark      bool
-	Time      float64
-	At        int // index of the duty
-	Explained []audit.Figure
-	Said      []string
-	Failed    []error
-	Went      []string
-	Kept      []dialog.Dialog
-	Picked    string // the file that the user picks, "" = none
-	SaveTo    string // where the user saves
+	T          *testing.T
+	Document   *document.Document
+	Win        fyne.Window
+	Units      units.System
+	Comma      bool
+	Dark       bool
+	Time       float64
+	At         int // index of the duty
+	Picked     string
+	Seen       station.View
+	Explained  []audit.Figure
+	Said       []string
+	Failed     []error
+	Went       []string
+	Kept       []dialog.Dialog
+	PickedFile string // the file that the user picks, "" = none
+	SaveTo     string // where the user saves
 }
 
 // New opens a sample, "" for the empty audit, and waits until it is solved.
@@ -129,10 +132,10 @@ func (c *Context) Say(text string)          { c.Said = append(c.Said, text) }
 func (c *Context) Fail(err error)           { c.Failed = append(c.Failed, err) }
 func (c *Context) Palette() figures.Palette { return widgets.Theme{Dark: c.Dark}.Palette() }
 
-// PickFile picks Picked.
+// PickFile picks PickedFile.
 func (c *Context) PickFile(_, _ string, _ []string, then func(path string)) {
-	if c.Picked != "" {
-		then(c.Picked)
+	if c.PickedFile != "" {
+		then(c.PickedFile)
 	}
 }
 
@@ -149,10 +152,25 @@ func (c *Context) SaveFirst(why string, then func()) {
 	then()
 }
 
-// Solution is that of the document.
+// Beside is the circuit picked, else the first there is.
+func (c *Context) Beside() string {
+	names := c.Document.File().Besides()
+	if len(names) > 0 && !slices.Contains(names, c.Picked) {
+		return names[0]
+	}
+	return c.Picked
+}
+
+// View is what the sheets show.
+func (c *Context) View() *station.View { return &c.Seen }
+
+// Pick takes another.
+func (c *Context) Pick(circuit string) { c.Picked = circuit }
+
+// Solution is that of the document, of two circuits.
 func (c *Context) Solution() *audit.Solution {
 	s, _ := c.Document.Solution()
-	return s
+	return s.Beside(c.Beside())
 }
 
 // Report lays it out.

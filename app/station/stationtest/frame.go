@@ -76,6 +76,12 @@ func (f *Frame) Theme(dark bool, scale float32) {
 func (f *Frame) SetClock(t float64) { f.Time = t; f.Station.Changed(station.Clock) }
 func (f *Frame) SetDuty(i int)      { f.At = i; f.Station.Changed(station.Selection | station.Clock) }
 
+// Pick tells the station as the frame does.
+func (f *Frame) Pick(circuit string) {
+	f.Picked = circuit
+	f.Station.Changed(station.Solution | station.Selection)
+}
+
 func (f *Frame) Select(circuit int, block string) {
 	f.Circuit, f.Block = circuit, block
 	f.Station.Changed(station.Selection)

@@ -1,0 +1,78 @@
+package main
+
+import (
+	"context"
+	"flag"
+	"fmt"
+	"io"
+	"os"
+	"os/signal"
+
+	"barlitre/audit"
+	"barlitre/audit/fixfirst"
+	"barlitre/audit/sitecheck"
+)
+
+// siteCheck prints the test plan of the circuits as found, and what the readings in the file say.
+func siteCheck(args []string, out, errs io.Writer) int {
+	files, set, system, err := readCall("sitecheck", args, errs, nil)
+	if err == flag.ErrHelp {
+		return exitOK
+	}
+	if err != nil {
+		fmt.Fprintln(errs, "barlitre sitecheck:", err)
+		return exitUnreadable
+	}
+	ctx, cancel := signal.NotifyContext(context.Background(), os.Interrupt)
+	defer cancel()
+	worst := exitOK
+	for _, path := range files {
+		s, code := solveFile(ctx, "sitecheck", path, set, audit.Options{}, errs)
+		worst = worse(worst, code)
+		if s == nil {
+			continue
+		}
+		ladders, err := fixfirst.All(ctx, s, fixfirst.Options{System: system})
+		var plans []*sitecheck.Plan
+		if err == nil {
+			plans, err = sitecheck.All(ctx, s, sitecheck.Options{System: system, Ladders: ladders})
+		}
+		if err != nil {
+			fmt.Fprintf(errs, "barlitre sitecheck: %s: %v\n", path, err)
+			return exitUnreadable
+		}
+		fmt.Fprintln(out, s.File.Title)
+		for _, p := range plans {
+			printSiteCheck(out, p, s.File.Readings)
+		}
+	}
+	return worst
+}
+
+func printSiteCheck(w io.Writer, p *sitecheck.Plan, readings []audit.Reading) {
+	heading(w, "Site check: "+p.Circuit)
+	wrap(w, sitecheck.Intro)
+	wrap(w, "States: "+sitecheck.StateText())
+	rows := [][]string{{"", "stopped", "idling", "holding", "working"}}
+	for _, pt := range p.Points {
+		row := []string{pt.What + ", " + pt.Name}
+		for _, s := range sitecheck.States() {
+			row = append(row, p.Shown(pt, s.Name))
+		}
+		rows = append(rows, row)
+	}
+	fmt.Fprintln(w)
+	table(w, rows)
+	for _, pt := range p.Points {
+		fmt.Fprintf(w, "\n  %s, %s\n", pt.What, pt.Place)
+		wrap(w, "Gauge: "+pt.Gauge+"; "+pt.Rate+".")
+		wrap(w, "Bad: "+p.Bad(pt)+".")
+		wrap(w, "Caution: "+pt.Caution)
+	}
+	fmt.Fprintln(w)
+	wrap(w, "Before you begin: "+sitecheck.Cautions)
+	v := p.Compare(readings)
+	auditTable(w, p.ReadTable(v))
+	fmt.Fprintln(w)
+	wrap(w, v.Text)
+}

@@ -1,0 +1,100 @@
+package frame
+
+import (
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"strings"
+	"time"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/dialog"
+
+	"barlitre/app/station"
+	"barlitre/audit"
+	"barlitre/audit/figures"
+	"barlitre/audit/pdf"
+)
+
+// today is the date on printed sheets.
+var today = time.Now
+
+// printItems offer the sheets on each size of paper.
+func (f *Frame) printItems() *fyne.MenuItem {
+	m := fyne.NewMenuItem("Sheets as PDF", nil)
+	m.ChildMenu = fyne.NewMenu("")
+	for _, p := range pdf.Papers {
+		m.ChildMenu.Items = append(m.ChildMenu.Items, fyne.NewMenuItem(p.Name+" lying…", func() {
+			if !f.asking() {
+				f.printSheets(p)
+			}
+		}))
+	}
+	return m
+}
+
+// seen is the view of the sheets as they stand in the window: the circuits shown, at the
+// clock, by the signs that are on, with the marks of the findings.
+func (f *Frame) seen(on pdf.Paper) pdf.View {
+	file := f.doc.File()
+	v := pdf.View{Duty: f.duty, At: f.clock, Cycle: f.view.Cycle, Hide: f.view.Hide, Paper: on, Marks: figures.Marks(f.doc.Findings())}
+	if base := file.Base(); base != nil {
+		v.Circuits = append(v.Circuits, base.Name)
+	}
+	if beside := f.Beside(); beside != "" {
+		v.Circuits = append(v.Circuits, beside)
+	}
+	return v
+}
+
+// printSheets asks for a name and writes the sheets there. Scripts may give a folder.
+func (f *Frame) printSheets(on pdf.Paper) {
+	if len(f.doc.File().Circuits) == 0 {
+		f.Say("There is no circuit to print yet; draw one, or take one from File > New.")
+		return
+	}
+	name := strings.TrimSuffix(f.suggestedName(), ".yaml") + "-sheets.pdf"
+	if dir := os.Getenv(saveDirVariable); dir != "" {
+		f.writeSheets(filepath.Join(dir, name), on)
+		return
+	}
+	d := dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
+		if err != nil {
+			f.Fail(err)
+		} else if w != nil {
+			path := w.URI().Path()
+			w.Close()
+			if filepath.Ext(path) == "" {
+				os.Remove(path)
+				path += ".pdf"
+			}
+			f.writeSheets(path, on)
+		}
+	}, f.win)
+	d.SetFileName(name)
+	f.showFiles(d, "Save the sheets as PDF", "Save")
+}
+
+// writeSheets writes them in the background: what is drawn is what is seen now.
+func (f *Frame) writeSheets(path string, on pdf.Paper) {
+	file, v, opt := f.doc.File(), f.seen(on), pdf.Options{System: f.settings.system, Date: today()}
+	var s *audit.Solution
+	if f.doc.Current() {
+		s, _ = f.doc.Solution()
+	}
+	f.Say("Writing " + path + " …")
+	go func() {
+		err := station.WriteWhole(path, func(w io.Writer) error { return pdf.WriteSheets(w, file, s, v, opt) })
+		post(func() {
+			switch {
+			case err != nil:
+				f.Fail(fmt.Errorf("print the sheets to %s: %w; nothing was written there, and the audit is still open here", path, err))
+			case s == nil:
+				f.Say("Saved the sheets without results, for they are not solved: " + path)
+			default:
+				f.Say("Saved the sheets: " + path)
+			}
+		})
+	}()
+}

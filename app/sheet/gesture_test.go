@@ -1,0 +1,440 @@
+package sheet
+
+import (
+	"bytes"
+	"slices"
+	"strings"
+	"testing"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/driver/desktop"
+
+	"barlitre/app/station"
+	"barlitre/audit/figures"
+)
+
+// typed types letters on a sheet.
+func (b *bench) typed(sheet int, letters string) {
+	for _, r := range letters {
+		b.s.editors[sheet].TypedRune(r)
+		b.pump()
+	}
+}
+
+// piece is the middle of the longest piece of the line of a port that runs level, or
+// upright, and at no port.
+func (b *bench) piece(sheet int, port string, level bool) fyne.Position {
+	b.t.Helper()
+	e := b.s.editors[sheet]
+	net, _ := b.lineOf(sheet, port)
+	longest, at := -1.0, fyne.Position{}
+	for _, p := range e.sheet.Pieces(net) {
+		a, c, _ := e.sheet.PieceEnds(p)
+		mid := e.onSheet((a[0]+c[0])/2, (a[1]+c[1])/2)
+		if l := (c[0]-a[0])*(c[0]-a[0]) + (c[1]-a[1])*(c[1]-a[1]); e.level(p) == level && l > longest && e.portAt(mid) == nil {
+			longest, at = l, mid
+		}
+	}
+	if longest < 0 {
+		b.t.Fatalf("the line of %s has no such piece", port)
+	}
+	return at
+}
+
+// bends are those of a circuit in the file, as text.
+func (b *bench) bends(at int) string {
+	text := string(b.doc.File().Bytes())
+	_, after, ok := strings.Cut(text, "bends:")
+	if !ok {
+		return ""
+	}
+	line, _, _ := strings.Cut(strings.TrimSpace(after), "\n")
+	return line
+}
+
+// answer types a text into the small window that asks for it, and ends it.
+func (b *bench) answer(text string) {
+	b.t.Helper()
+	switch f := b.win.Canvas().Focused().(type) {
+	case *keyed:
+		f.SetText(text)
+		f.TypedKey(&fyne.KeyEvent{Name: fyne.KeyReturn})
+	case *pages:
+		f.SetText(text)
+		f.TypedShortcut(&desktop.CustomShortcut{KeyName: fyne.KeyReturn, Modifier: fyne.KeyModifierControl})
+	default:
+		b.t.Fatalf("nothing asks for a text: %T", f)
+	}
+	b.pump()
+}
+
+// three is a drawing with a line of three ends.
+func three(t *testing.T) *bench {
+	b := drawing(t)
+	e := b.s.editors[0]
+	if _, err := b.doc.AddBlock(e.name, "relief", [2]float64{30, 30}); err != nil {
+		t.Fatal(err)
+	}
+	for _, p := range []string{"RV1.P", "RV2.P"} {
+		if err := b.doc.Connect(e.name, "P1.P", p); err != nil {
+			t.Fatal(err)
+		}
+	}
+	b.pump()
+	b.s.fitAll()
+	return b
+}
+
+// A drag from anywhere on a line pulls a branch; a label tells what a release would do.
+func TestPullABranch(t *testing.T) {
+	b := three(t)
+	e := b.s.editors[0]
+	if _, err := b.doc.AddBlock(e.name, "accumulator", [2]float64{0, -40}); err != nil {
+		t.Fatal(err)
+	}
+	b.pump()
+	b.s.fitAll()
+	before := b.doc.File().Bytes()
+	var free string
+	for _, p := range e.ports {
+		if strings.HasPrefix(p.Block, "A") {
+			free = p.String()
+		}
+	}
+	on, to := b.piece(0, "P1.P", true), b.port(0, free)
+	e.MouseDown(event(on, desktop.MouseButtonPrimary, 0))
+	b.dragOn(0, on, to)
+	if got := e.hover.text(); !strings.HasPrefix(got, "Join ") || !strings.Contains(got, free) {
+		t.Errorf("before the release the label says %q", got)
+	}
+	b.picture("pull-branch")
+	e.DragEnd()
+	b.pump()
+	if got := b.line(0, free); len(got) != 4 {
+		t.Fatalf("%s stands on %v; said %q", free, got, b.said)
+	}
+	b.undone(before, "Connect "+free)
+}
+
+// A line that is dropped on another line joins the two; what may not be is refused in
+// words while the button is still down.
+func TestLineOnLine(t *testing.T) {
+	b := three(t)
+	e := b.s.editors[0]
+	var ids []string
+	for _, at := range [][2]float64{{0, 60}, {40, 60}} {
+		id, err := b.doc.AddBlock(e.name, "relief", at)
+		if err != nil {
+			t.Fatal(err)
+		}
+		ids = append(ids, id)
+	}
+	for _, c := range [][2]string{{ids[0] + ".P", ids[1] + ".P"}, {"M1.shaft", "P1.shaft"}} {
+		if err := b.doc.Connect(e.name, c[0], c[1]); err != nil {
+			t.Fatal(err)
+		}
+	}
+	b.pump()
+	b.s.fitAll()
+	before := b.doc.File().Bytes()
+	on := b.piece(0, "P1.P", true)
+	e.MouseDown(event(on, desktop.MouseButtonPrimary, 0))
+	b.dragOn(0, on, b.piece(0, "M1.shaft", true))
+	if got := e.hover.text(); !strings.HasPrefix(got, "⚠") || e.wire.line.StrokeColor != b.Palette().Danger {
+		t.Errorf("oil to a shaft: the label says %q", got)
+	}
+	b.picture("refused-join")
+	e.DragEnd()
+	b.pump()
+	if !bytes.Equal(before, b.doc.File().Bytes()) {
+		t.Error("a refused join changed the file")
+	}
+	b.drag(0, on, b.piece(0, ids[0]+".P", true), desktop.MouseButtonPrimary, 0)
+	if got := b.line(0, "P1.P"); len(got) != 5 {
+		t.Fatalf("P1.P stands on %v; said %q", got, b.said)
+	}
+	b.undone(before, "Join two lines")
+}
+
+// A second click on a line chooses the branch under it, and Del takes that alone away.
+func TestDeleteABranch(t *testing.T) {
+	for _, keys := range []bool{false, true} {
+		b := three(t)
+		e := b.s.editors[0]
+		before := b.doc.File().Bytes()
+		if keys {
+			e.choose("RV2", false)
+			b.typed(0, "l")
+			for range 20 {
+				if b.typed(0, "b"); e.piece != nil {
+					if p, ok := e.sheet.Leaf(*e.piece); ok && p.Block == "RV2" {
+						break
+					}
+				}
+			}
+		} else {
+			at := b.port(0, "RV2.P").AddXY(0, -float32(1.5*e.zoom)) // just before the port
+			for i := 0; i < 2; i++ {
+				b.click(0, at, 0)
+			}
+		}
+		if e.piece == nil || e.line < 0 {
+			t.Fatalf("keys %v: no branch is chosen; said %q", keys, b.said)
+		}
+		b.key(0, fyne.KeyDelete)
+		if got := b.line(0, "P1.P"); !slices.Equal(got, []string{"P1.P", "RV1.P"}) || b.line(0, "RV2.P") != nil {
+			t.Errorf("keys %v: P1.P stands on %v, RV2.P on %v; said %q", keys, got, b.line(0, "RV2.P"), b.said)
+		}
+		b.undone(before, b.doc.UndoName())
+	}
+}
+
+// A drag on a selected line moves the piece sideways; S lays the line as before, to the
+// byte; arrow keys do the same.
+func TestBendALine(t *testing.T) {
+	b := newBench(t, press, window)
+	e := b.s.editors[0]
+	before := b.doc.File().Bytes()
+	on := b.piece(0, "P1.P", true)
+	b.click(0, on, 0)
+	b.drag(0, on, on.AddXY(0, float32(4*e.zoom)), desktop.MouseButtonPrimary, 0)
+	if got := b.bends(0); !strings.HasPrefix(got, "- {port: P1.P, runs: [[") {
+		t.Fatalf("bends are %q; said %q", got, b.said)
+	}
+	if !strings.HasPrefix(b.doc.UndoName(), "Bend line P1.P") {
+		t.Errorf("undo is called %q", b.doc.UndoName())
+	}
+	if e.line < 0 || !e.sheet.Bent(e.line) || e.piece == nil {
+		t.Fatalf("after the drag line %d, piece %v", e.line, e.piece)
+	}
+	first := b.bends(0)
+	b.key(0, fyne.KeyDown)
+	if b.bends(0) == first {
+		t.Errorf("Down leaves the bend as it was; said %q", b.said[len(b.said)-1])
+	}
+	moved := 0
+	for i, line := range strings.Split(string(b.doc.File().Bytes()), "\n") {
+		if old := strings.Split(string(before), "\n"); i >= len(old) || old[i] != line {
+			moved++
+		}
+	}
+	b.typed(0, "s")
+	if b.bends(0) != "" && b.bends(0) != "[]" || e.sheet.Bent(e.line) {
+		t.Errorf("straightened, the bends are %q", b.bends(0))
+	}
+	for b.doc.UndoName() != "" {
+		b.doc.Undo()
+	}
+	b.pump()
+	if !bytes.Equal(before, b.doc.File().Bytes()) || moved == 0 {
+		t.Errorf("undone, the file is not as it was; %d lines were changed", moved)
+	}
+}
+
+// A line is drawn by keys alone: C, the port, the target, Enter.
+func TestConnectByKeys(t *testing.T) {
+	b := drawing(t)
+	e := b.s.editors[0]
+	before := b.doc.File().Bytes()
+	e.choose("P1", false)
+	b.typed(0, "c")
+	for range 10 {
+		if p := e.join.ports[e.join.at]; p.Port == "P" {
+			break
+		}
+		b.key(0, fyne.KeyTab)
+	}
+	if !strings.HasPrefix(e.hover.text(), "P1.P") || !e.wire.rings[0].Visible() {
+		t.Errorf("the label says %q", e.hover.text())
+	}
+	b.key(0, fyne.KeyReturn)
+	for range 10 {
+		if e.join.ports[e.join.at].String() == "RV1.P" {
+			break
+		}
+		b.key(0, fyne.KeyTab)
+	}
+	if e.hover.text() != "Connect P1.P and RV1.P" || !e.wire.line.Visible() {
+		t.Errorf("before Enter the label says %q", e.hover.text())
+	}
+	b.picture("connect-by-keys")
+	b.key(0, fyne.KeyReturn)
+	if got := b.line(0, "P1.P"); !slices.Equal(got, []string{"P1.P", "RV1.P"}) || e.wire.line.Visible() {
+		t.Fatalf("P1.P stands on %v; said %q", got, b.said)
+	}
+	b.undone(before, "Connect P1.P and RV1.P")
+	e.choose("P1", false)
+	b.typed(0, "c")
+	b.key(0, fyne.KeyEscape)
+	if e.join.on || !bytes.Equal(before, b.doc.File().Bytes()) {
+		t.Error("Escape does not give up")
+	}
+}
+
+// A box with a label: made, renamed, moved with what is in it, taken away.
+func TestGroupByKeys(t *testing.T) {
+	b := newBench(t, press, window)
+	e := b.s.editors[0]
+	start := b.doc.File().Bytes()
+	b.click(0, b.middle(0, "P1"), 0)
+	b.click(0, b.middle(0, "M1"), fyne.KeyModifierShift)
+	b.s.Act(station.Group)
+	b.answer("Power unit")
+	g := b.doc.File().Circuits[0].Groups
+	if len(g) != 1 || g[0].Label != "Power unit" || !slices.Equal(g[0].Blocks, []string{"M1", "P1"}) || e.group != 0 {
+		t.Fatalf("groups %v, selected %d; said %q", g, e.group, b.said)
+	}
+	b.picture("group")
+	x, y, _ := e.sheet.GroupLabel(0)
+	label := e.onSheet(x, y)
+	was := *b.doc.File().Circuits[0].Block("P1").At
+	b.drag(0, label, label.AddXY(float32(3*e.zoom), 0), desktop.MouseButtonPrimary, 0)
+	if got := *b.doc.File().Circuits[0].Block("P1").At; got != [2]float64{was[0] + 3, was[1]} || b.doc.UndoName() != "Move 2 blocks" {
+		t.Errorf("P1 is at %v, was at %v; undo is called %q", got, was, b.doc.UndoName())
+	}
+	b.key(0, fyne.KeyF2)
+	b.answer("Supply: left")
+	if got := b.doc.File().Circuits[0].Groups[0].Label; got != "Supply: left" {
+		t.Errorf("the label is %q", got)
+	}
+	b.key(0, fyne.KeyDelete)
+	if got := b.doc.File().Circuits[0]; len(got.Groups) != 0 || got.Block("P1") == nil {
+		t.Errorf("after Del there are %d groups", len(got.Groups))
+	}
+	b.backTo(start)
+}
+
+// backTo undoes all and expects a text.
+func (b *bench) backTo(start []byte) {
+	b.t.Helper()
+	for b.doc.UndoName() != "" {
+		b.doc.Undo()
+	}
+	b.pump()
+	if !bytes.Equal(start, b.doc.File().Bytes()) {
+		b.t.Error("undone to the start, the text is not as it was")
+	}
+}
+
+// A note of several lines: added at the pointer, moved, changed, removed.
+func TestNotes(t *testing.T) {
+	b := newBench(t, press, window)
+	e := b.s.editors[0]
+	start := b.doc.File().Bytes()
+	e.MouseMoved(event(fyne.NewPos(40, 40), 0, 0))
+	b.typed(0, "n")
+	b.answer("Label not legible:\nask the maintenance chief")
+	notes := b.doc.File().Circuits[0].Notes
+	if len(notes) != 1 || !e.notes[0] || !strings.Contains(notes[0].Text, ":\nask") {
+		t.Fatalf("notes %v, selected %v; said %q", notes, e.notes, b.said)
+	}
+	b.picture("note")
+	x, y, w, h, _ := e.sheet.MarkBox(figures.SheetMark{Note: 0, Group: -1})
+	at := e.onSheet(x+w/2, y+h/2)
+	b.drag(0, at, at.AddXY(float32(2*e.zoom), float32(e.zoom)), desktop.MouseButtonPrimary, 0)
+	if got := b.doc.File().Circuits[0].Notes[0].At; got != [2]float64{notes[0].At[0] + 2, notes[0].At[1] + 1} || b.doc.UndoName() != "Move note" {
+		t.Errorf("the note is at %v, was at %v; undo is called %q", got, notes[0].At, b.doc.UndoName())
+	}
+	b.key(0, fyne.KeyReturn)
+	b.answer("Asked: 220 bar")
+	if got := b.doc.File().Circuits[0].Notes[0].Text; got != "Asked: 220 bar" {
+		t.Errorf("the note says %q", got)
+	}
+	b.key(0, fyne.KeyDelete)
+	if got := b.doc.File().Circuits[0].Notes; len(got) != 0 {
+		t.Errorf("after Del there are %d notes", len(got))
+	}
+	b.backTo(start)
+}
+
+// Ctrl+A selects all, Escape nothing; Tab reaches notes and groups behind the blocks.
+func TestSelectAll(t *testing.T) {
+	b := newBench(t, press, window)
+	e := b.s.editors[0]
+	if _, err := b.doc.AddNote(e.name, "a note", [2]float64{0, 0}); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := b.doc.AddGroup(e.name, "Drive", "M1", "P1"); err != nil {
+		t.Fatal(err)
+	}
+	b.pump()
+	b.s.active = 0
+	b.s.Act(station.SelectAll)
+	if len(e.selected) != len(e.drawn.Blocks) || len(e.notes) != 1 {
+		t.Errorf("%d of %d blocks and %d notes are selected", len(e.selected), len(e.drawn.Blocks), len(e.notes))
+	}
+	b.key(0, fyne.KeyEscape)
+	if !e.nothing() {
+		t.Error("Escape leaves something selected")
+	}
+	b.win.Canvas().Focus(e)
+	for range e.drawn.Blocks {
+		b.key(0, fyne.KeyTab)
+	}
+	b.key(0, fyne.KeyTab)
+	if !e.notes[0] {
+		t.Errorf("Tab behind the blocks selects notes %v, group %d", e.notes, e.group)
+	}
+	b.key(0, fyne.KeyTab)
+	if e.group != 0 {
+		t.Errorf("the next Tab selects notes %v, group %d", e.notes, e.group)
+	}
+}
+
+// Dragged blocks show what they are level and upright with.
+func TestGuides(t *testing.T) {
+	b := drawing(t)
+	e := b.s.editors[0]
+	from := b.middle(0, "RV1")
+	x, y, _ := e.sheet.At("RV1")
+	px, py, _ := e.sheet.At("P1")
+	e.MouseDown(event(from, desktop.MouseButtonPrimary, 0))
+	b.dragOn(0, from, from.AddXY(float32((px-x)*e.zoom), float32((py-y+20)*e.zoom)))
+	if !e.lift.guides[0].Visible() {
+		t.Error("no line shows that RV1 stands below P1")
+	}
+	b.picture("guides")
+	e.cancel()
+	if e.lift.guides[0].Visible() || e.lift.guides[1].Visible() {
+		t.Error("a guide stays after the drag was given up")
+	}
+}
+
+// The wheel pans with Shift, keys see the selection large and the whole.
+func TestViewByKeys(t *testing.T) {
+	b := newBench(t, press, window)
+	e := b.s.editors[0]
+	x, y := e.x, e.y
+	e.KeyDown(&fyne.KeyEvent{Name: desktop.KeyShiftLeft})
+	e.Scrolled(&fyne.ScrollEvent{Scrolled: fyne.NewDelta(0, 25)})
+	e.KeyUp(&fyne.KeyEvent{Name: desktop.KeyShiftLeft})
+	if e.x == x || e.y != y {
+		t.Errorf("Shift and wheel move the view by %g, %g", e.x-x, e.y-y)
+	}
+	e.choose("RV1", false)
+	before := e.zoom
+	b.typed(0, "z")
+	at := b.middle(0, "RV1")
+	w, h := e.room()
+	if e.zoom <= before || float64(at.X) < 0.3*w || float64(at.X) > 0.7*w || float64(at.Y) < 0.3*h || float64(at.Y) > 0.7*h {
+		t.Errorf("zoom %g, was %g; RV1 at %v of %g, %g", e.zoom, before, at, w, h)
+	}
+	b.key(0, fyne.KeyHome)
+	if !e.fitted {
+		t.Error("Home does not show the whole sheet")
+	}
+}
+
+// What another program put into the clipboard is refused in words.
+func TestForeignText(t *testing.T) {
+	b := newBench(t, press, window)
+	before := b.doc.File().Bytes()
+	for _, text := range []string{"", "Dear sir,\n\tplease find", "format: barlitre/1\n", "{\"a\": [1, 2}"} {
+		b.app.Clipboard().SetContent(text)
+		b.s.Act(station.Paste)
+		b.pump()
+		if last := b.said[len(b.said)-1]; !strings.Contains(last, "clipboard holds no blocks") || !bytes.Equal(before, b.doc.File().Bytes()) {
+			t.Errorf("%q: said %q", text, last)
+		}
+	}
+}

@@ -1,0 +1,238 @@
+package fixfirst
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"barlitre/audit"
+	"barlitre/machines/units"
+)
+
+// Page is a ladder in words, for a terminal, paper and the window.
+type Page struct {
+	Circuit string
+	Verdict string   // in a sentence or two
+	Head    []string // of Rows
+	Rows    []Row    // the steps in order with their prices
+	Note    string   // below them
+	Items   []Item
+	Splits  []SplitPage
+}
+
+// Row is a row of figures.
+type Row struct {
+	Name  string
+	Cells []audit.Figure
+	Sum   bool
+}
+
+// tableOf is a table of rows.
+func tableOf(title, note string, head []string, rows []Row) audit.Table {
+	t := audit.Table{Title: title, Head: head, Note: note}
+	for _, r := range rows {
+		cells := []string{r.Name}
+		for _, c := range r.Cells {
+			cells = append(cells, c.Text)
+		}
+		t.Rows = append(t.Rows, audit.TableRow{Cells: cells, Sum: r.Sum})
+	}
+	return t
+}
+
+// Ladder is the steps as a table.
+func (p Page) Ladder() audit.Table {
+	return tableOf("What to put right, in this order", p.Note, p.Head, p.Rows)
+}
+
+// Table is the split as a table.
+func (s SplitPage) Table() audit.Table {
+	return tableOf("Where the saving of "+s.Proposal+" comes from", "", s.Head, s.Rows)
+}
+
+// Item is a step in words.
+type Item struct {
+	Number   int
+	Head     string
+	Where    string // duty and time, "" where it is everywhere
+	Text     string
+	Evidence []Quantity
+	Do       string
+	Caution  string
+	Basis    string
+	Price    string
+	Note     string
+	Cure     string // as the price was computed
+	Block    string // to be shown, "" where it is the machine as a whole
+	Habit    bool
+}
+
+// SplitPage is what of a proposal's saving is its own.
+type SplitPage struct {
+	Proposal string
+	Text     string
+	Head     []string
+	Rows     []Row
+}
+
+// Page puts a ladder into words.
+func (l *Ladder) Page(system units.System) Page {
+	w := words{l.Currency, system}
+	p := Page{Circuit: l.Circuit, Verdict: w.verdict(l), Head: []string{"what", "takes", "alone", "", "in order", ""}, Rows: w.ladder(l),
+		Note: "A year. First what costs nothing, then service, then parts; within each the largest saving first. \"Alone\" is the saving if nothing else is done, \"in order\" what it adds to those above it. Both come from balancing the circuit again with the cure in it."}
+	for i, x := range l.Steps {
+		p.Items = append(p.Items, w.item(i+1, x))
+	}
+	for _, s := range l.Splits {
+		p.Splits = append(p.Splits, w.split(l, s))
+	}
+	return p
+}
+
+// words writes figures.
+type words struct {
+	currency string
+	system   units.System
+}
+
+func (w words) energy(j float64) string {
+	if math.IsNaN(j) {
+		return "n/a"
+	}
+	u, _ := units.ParseUnit("kWh", units.Energy)
+	return units.Format(j, u, 4)
+}
+
+func (w words) money(x float64) string {
+	if math.IsNaN(x) || w.currency == "" {
+		return "no price"
+	}
+	return units.Number(x, 4) + " " + w.currency
+}
+
+func (w words) power(x float64) string {
+	return units.Format(x, units.Preferred(units.Power, w.system), 3)
+}
+
+func seconds(t float64) string { return units.Format(t, units.Preferred(units.Time, units.Metric), 3) }
+
+func (w words) both(s Saving) string {
+	if math.IsNaN(s.Money) || w.currency == "" {
+		return w.energy(s.Energy)
+	}
+	return w.energy(s.Energy) + " (" + w.money(s.Money) + ")"
+}
+
+func (w words) verdict(l *Ladder) string {
+	n, total := l.Faults(), l.Total()
+	if n == 0 && len(l.Steps) == 0 {
+		return "Nothing was found that is to be put right before anything else: settings, parts and running hours are as one would wish, as far as the drawing and its results show."
+	}
+	faults := map[int]string{0: "No fault was found", 1: "One fault was found"}[n]
+	if faults == "" {
+		faults = fmt.Sprintf("%d faults were found", n)
+	}
+	habits := len(l.Steps) - n
+	switch {
+	case habits == 1:
+		faults += ", and one way of running it that costs money"
+	case habits > 1:
+		faults += fmt.Sprintf(", and %d ways of running it that cost money", habits)
+	}
+	share := ""
+	if l.AsFound.Drawn > 0 {
+		share = ", " + units.Format(total.Energy/l.AsFound.Drawn, units.Percent, 3)
+	}
+	return fmt.Sprintf("%s. Put right in the order below, the circuit \"%s\" would draw %s a year in place of %s: %s less%s. That is the machine a proposal has to beat.",
+		faults, l.Circuit, w.energy(l.Cured.Drawn), w.energy(l.AsFound.Drawn), w.both(total), share)
+}
+
+func (w words) ladder(l *Ladder) []Row {
+	var rows []Row
+	for i, x := range l.Steps {
+		r := Row{Name: fmt.Sprintf("%d  %s", i+1, x.Name()), Cells: []audit.Figure{{Text: x.Effort.short()}}}
+		r.Cells = append(r.Cells, w.figures(x.Name()+", cured alone", x.Alone, l.AsFound, x.Without, x.Cure.String())...)
+		r.Cells = append(r.Cells, w.figures(x.Name()+", after those above it", x.InOrder, x.Before, x.After, x.Cure.String())...)
+		rows = append(rows, r)
+	}
+	if len(l.Steps) > 0 {
+		r := Row{Name: "all, in order", Sum: true, Cells: []audit.Figure{{}, {}, {}}}
+		rows = append(rows, Row{r.Name, append(r.Cells, w.figures("all, in order", l.Total(), l.AsFound, l.Cured, l.Edits.String())...), true})
+	}
+	return rows
+}
+
+// figures are a saving in energy and money, with where they come from.
+func (w words) figures(name string, s Saving, before, after Year, with string) []audit.Figure {
+	energy := audit.Figure{Name: name + ": energy a year", Value: s.Energy, Text: w.energy(s.Energy)}
+	money := audit.Figure{Name: name + ": money a year", Value: s.Money, Text: w.money(s.Money)}
+	if math.IsNaN(s.Energy) {
+		return []audit.Figure{energy, money}
+	}
+	source := "the circuit balanced twice over the year of its duties"
+	if with != "" {
+		source += "; with " + with
+	}
+	energy.Calculation = audit.Calculation{Formula: "saving = E_before − E_after", Numbers: fmt.Sprintf("%s − %s = %s", w.energy(before.Drawn), w.energy(after.Drawn), energy.Text), Source: source}
+	if w.currency != "" && !math.IsNaN(s.Money) {
+		money.Calculation = audit.Calculation{Formula: "saving = K_before − K_after, K the cost of energy a year", Numbers: fmt.Sprintf("%s − %s = %s", w.money(before.Money), w.money(after.Money), money.Text), Source: source}
+	}
+	return []audit.Figure{energy, money}
+}
+
+func (e Effort) short() string { return [...]string{"nothing", "service", "a part"}[e] }
+
+func (w words) item(n int, x *Step) Item {
+	it := Item{Number: n, Head: x.Name(), Text: x.Text, Evidence: x.Evidence, Do: x.Do, Caution: x.Caution, Basis: x.Basis, Note: x.Note(), Block: x.Block, Habit: x.Habit, Cure: x.Cure.String()}
+	if x.Duty != "" {
+		it.Where = x.Duty
+		if x.Time > 0 {
+			it.Where += ", at " + units.Format(x.Time, units.Preferred(units.Time, units.Metric), 4)
+		}
+	}
+	if x.Unpriced == "" {
+		it.Price = fmt.Sprintf("%s a year alone, %s in order; %s.", w.both(x.Alone), w.both(x.InOrder), x.Effort)
+	}
+	return it
+}
+
+func (w words) split(l *Ladder, s Split) SplitPage {
+	page := SplitPage{Proposal: s.Proposal, Head: []string{"", "energy a year", "money a year", "share"}}
+	row := func(sum bool, name string, x Saving, figures []audit.Figure) {
+		share := "n/a"
+		if s.Whole.Energy != 0 {
+			share = units.Format(x.Energy/s.Whole.Energy, units.Percent, 3)
+		}
+		page.Rows = append(page.Rows, Row{name, append(figures, audit.Figure{Text: share}), sum})
+	}
+	for _, c := range Classes() {
+		x := s.Class[c]
+		row(false, "of "+l.Circuit+": "+string(c), x, []audit.Figure{{Text: w.energy(x.Energy)}, {Text: w.money(x.Money)}})
+	}
+	adds := "what " + s.Proposal + " adds"
+	row(false, adds, s.Architecture, w.figures(adds, s.Architecture, l.Cured, s.Year, ""))
+	row(true, "saving in all", s.Whole, w.figures("saving in all", s.Whole, l.AsFound, s.Year, ""))
+	page.Text = fmt.Sprintf("Of the %s that %s saves a year, %s can be had without it, by putting %s right. With that done it adds %s.",
+		w.both(s.Whole), s.Proposal, w.both(l.Total()), l.Circuit, w.both(s.Architecture))
+	if s.Whole.Energy <= 0 || l.Total().Energy <= 0 {
+		page.Text = fmt.Sprintf("Against %s with its faults cured, %s saves %s.", l.Circuit, s.Proposal, w.both(s.Architecture))
+	}
+	if s.Payback.None == "" && l.Total().Energy != 0 {
+		page.Text += fmt.Sprintf(" By what it adds alone, its cost comes back in %s.", s.Payback)
+	}
+	if s.Besides.Energy > 0 {
+		page.Text += fmt.Sprintf(" Switched off in the same hours, it would draw %s less besides.", w.both(s.Besides))
+	}
+	return page
+}
+
+// Names lists the faults of a ladder in one line.
+func (l *Ladder) Names() string {
+	var out []string
+	for _, x := range l.Steps {
+		if !x.Habit {
+			out = append(out, x.Name())
+		}
+	}
+	return strings.Join(out, "; ")
+}

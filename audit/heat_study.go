@@ -1,0 +1,403 @@
+package audit
+
+import (
+	"context"
+	"fmt"
+	"math"
+
+	"barlitre/audit/thermal"
+	"barlitre/circuit"
+	"barlitre/machines/units"
+)
+
+// HeatStudy is how warm the oil of a circuit gets, with the tank, cooler, air and shifts of the file.
+type HeatStudy struct {
+	Fault   string // why nothing could be worked out, or ""
+	Section HeatSection
+	Heating // loads and limits; what a window changes on the fly is the Plant
+
+	Plant thermal.Plant   // as found: the mix of the duties in every shift, the air of an ordinary day
+	Week  *thermal.Course // the week that repeats itself
+	Hot   *thermal.Course // the same at the air of the hottest day
+	Start *thermal.Course // the first two days of a cold start on a winter morning
+	Ready float64         // s from that start to working viscosity; NaN when it is not reached in a day
+
+	Needs  []CoolerNeed
+	Checks []HeatCheck
+	Tanks  []TankCase
+	Cycles []CycleRipple
+
+	Points int     // temperatures that the circuit was solved at
+	Missed float64 // share by which the table missed the circuit solved where it led to, before that was added
+	Few    string  // why not more, or ""
+}
+
+// Heating is what a study rests on.
+type Heating struct {
+	Loads   []thermal.Load // the mix, then each duty
+	Hottest int            // load that makes the oil hottest
+	Peak    float64        // W, highest shaft power of all duties: the heat when a relief valve takes all
+	Oil     circuit.Conditions
+	Grade   string // of the oil, as the file has it
+
+	Wanted, Alarm, WinterStart, HotDay, WorkViscosity, Fouling float64
+	Fans                                                       int
+	Hours                                                      float64 // s a year
+}
+
+// Mix is the load of a machine that does its duties in the mix of the year.
+const Mix = 0
+
+// warm works out how warm the oil gets, and books what the cooling draws.
+func (j *job) warm(ctx context.Context) error {
+	s, r := j.solution, j.run
+	section := s.File.HeatOf(s.File.Circuit(r.Circuit.Name))
+	solved := false
+	for _, d := range r.Duties {
+		solved = solved || d.Balance != nil
+	}
+	if !section.Given || !solved {
+		return nil
+	}
+	var err error
+	j.guard("", func() { r.Warmth, err = studyHeat(ctx, s, r, section) })
+	if err == nil && r.Warmth != nil && r.Warmth.Week != nil {
+		r.bookCooling()
+	}
+	return err
+}
+
+// studyHeat makes the study; the error is that of the context.
+func studyHeat(ctx context.Context, s *Solution, r *CircuitRun, section HeatSection) (*HeatStudy, error) {
+	h := &HeatStudy{Section: section, Ready: math.NaN()}
+	if h.Fault = h.missing(s); h.Fault != "" {
+		return h, nil
+	}
+	h.Heating = heatingOf(s, r, section)
+	t, err := newHeatTable(ctx, s, r, h.WinterStart)
+	if err != nil {
+		return nil, err
+	}
+	fault := h.take(s, t)
+	if fault == nil {
+		err = t.refine(ctx, func() ([]float64, error) {
+			if fault = h.take(s, t); fault != nil {
+				return nil, fault
+			}
+			return h.leadsTo()
+		})
+		if err != nil {
+			return nil, err
+		}
+	}
+	if fault == nil {
+		fault = h.take(s, t)
+	}
+	if fault == nil {
+		fault = h.follow()
+	}
+	h.Missed, h.Few = t.Misses, t.Few
+	if len(t.loads) > 0 {
+		h.Points = len(t.loads[0].At)
+	}
+	if fault != nil {
+		h.Fault, h.Week = fault.Error(), nil
+		return h, nil
+	}
+	h.ripples(r)
+	return h, nil
+}
+
+// missing says what the file does not give, or "".
+func (h *HeatStudy) missing(s *Solution) string {
+	sec := h.Section
+	_, volume := sec.Values["tank_volume"]
+	cooled := sec.Word("cooler") != noCooler
+	_, water := sec.Values["water_temperature"]
+	_, loop := sec.Values["loop_flow"]
+	switch {
+	case !volume:
+		return "heat: no oil temperature can be worked out without the oil in the tank; give tank_volume"
+	case math.IsNaN(s.Air):
+		return "heat: no oil temperature can be worked out without the temperature of the air; give air: {temperature: ...}"
+	case cooled && sec.stated() == 0:
+		return "heat: the cooler has no capacity; give cooler_rate or cooler_points, or cooler: none"
+	case sec.Word("cooler") == waterCooler && !water:
+		return "heat: a water cooler needs water_temperature, at which the water enters"
+	case sec.Word("cooler_place") == placeOffLine && !loop:
+		return "heat: an off-line cooler needs loop_flow, the flow of the pump of its loop"
+	}
+	return ""
+}
+
+func heatingOf(s *Solution, r *CircuitRun, sec HeatSection) Heating {
+	n := func(key string) float64 { return sec.number(key, &s.Conditions) }
+	h := Heating{Oil: s.Conditions, Grade: s.File.Oil.Grade, Wanted: n("wanted"), Alarm: n("alarm"), WinterStart: n("winter_start"), HotDay: n("hot_day"),
+		WorkViscosity: n("work_viscosity"), Fouling: n("fouling"), Fans: int(n("fans"))}
+	for _, d := range r.Duties {
+		if d.Balance != nil {
+			h.Peak = math.Max(h.Peak, d.Balance.PeakShaft)
+			h.Hours += d.Duty.Hours
+		}
+	}
+	return h
+}
+
+// take makes the plant from what the table knows so far.
+func (h *HeatStudy) take(s *Solution, t *heatTable) error {
+	shares, all := make([]float64, len(t.duties)), 0.0
+	for i, d := range t.duties {
+		shares[i] = d.Duty.Hours
+		all += d.Duty.Hours
+	}
+	for i := range shares {
+		if shares[i] /= all; all == 0 {
+			shares[i] = 1 / float64(len(shares))
+		}
+	}
+	mix, err := thermal.Mix("the duties in the mix of the year", t.loads, shares)
+	if err != nil {
+		return err
+	}
+	h.Loads = append([]thermal.Load{mix}, t.loads...)
+	h.Plant = h.plant(s.Air)
+	if err := h.Plant.Prepare(); err != nil {
+		return err
+	}
+	h.worst()
+	return nil
+}
+
+// worst finds the duty that makes the oil hottest on a hot day; among those that know no end the one with the most heat.
+func (h *HeatStudy) worst() {
+	top, most := math.Inf(-1), 0.0
+	for i := 1; i < len(h.Loads); i++ {
+		theta := h.Plant.Steady(i, h.HotDay)
+		w, err := h.Loads[i].HeatAt(h.Wanted)
+		if err == nil && (theta > top || theta == top && w > most) {
+			top, most, h.Hottest = theta, w, i
+		}
+	}
+}
+
+// plant is the machine as the section has it.
+func (h *HeatStudy) plant(air float64) thermal.Plant {
+	sec := h.Section
+	n := func(key string) float64 { return sec.number(key, &h.Oil) }
+	or0 := func(key string) float64 {
+		if v := n(key); !math.IsNaN(v) {
+			return v
+		}
+		return 0
+	}
+	rho := rhoC(&h.Oil)
+	wall := n("wall_coefficient")
+	b := thermal.Body{RhoC: rho, Oil: n("tank_volume") * rho, Walls: wall * n("tank_area"), SteelWalls: wall * n("steel_area")}
+	if steel := n("steel_mass") * thermal.SteelHeat; or0("steel_coupling") > 0 && steel > 0 {
+		b.Steel, b.Coupling = steel, n("steel_coupling")
+	} else {
+		b.Oil += steel
+	}
+	c := thermal.Cooler{Place: placeOf(sec.Word("cooler_place")), Opens: or0("thermostat_opens"), Full: or0("thermostat_full"),
+		LoopFlow: or0("loop_flow"), Scale: 1}
+	if sec.Word("cooler") != noCooler {
+		c.Rate, c.RateFlow, c.Points = sec.Values["cooler_rate"].SI, or0("cooler_flow"), sec.Points
+		c.Fan, c.Switched = or0("fan_power"), sec.Word("fan") == fanByThermostat && or0("thermostat_opens") > 0
+		if sec.Word("cooler") == waterCooler {
+			c.Water = n("water_temperature")
+		} else {
+			c.Scale = math.Max(0.1, 1-0.1*n("altitude")/1000)
+		}
+		if c.Place == thermal.OffLine {
+			c.LoopPower = n("loop_power")
+		}
+	}
+	shifts := thermal.Shifts{Start: n("shift_start"), Hours: n("shift_hours"), Days: int(n("shift_days"))}
+	return thermal.Plant{Body: b, Cooler: c, Air: thermal.Air{Mean: air, Swing: n("air_swing"), Warmest: warmestHour},
+		Loads: h.Loads, Spans: shifts.Spans(Mix)}
+}
+
+// warmestHour is when the air is warmest, 15:00 (common practice).
+const warmestHour = 15 * units.Hour
+
+func placeOf(word string) thermal.Place {
+	switch word {
+	case placeDrain:
+		return thermal.CaseDrain
+	case placeFlushing:
+		return thermal.Flushing
+	case placeOffLine:
+		return thermal.OffLine
+	}
+	return thermal.ReturnLine
+}
+
+// leadsTo returns the temperatures that the answers hang on.
+func (h *HeatStudy) leadsTo() ([]float64, error) {
+	week, err := h.Plant.Periodic()
+	if err != nil {
+		return nil, err
+	}
+	top, _ := week.Highest()
+	return []float64{week.Ran, top}, nil
+}
+
+// With returns the plant with other loads and another mean of the air.
+func (h *HeatStudy) With(load int, air float64) thermal.Plant {
+	p := h.Plant
+	p.Spans = nil
+	for _, s := range h.Plant.Spans {
+		s.Load = load
+		p.Spans = append(p.Spans, s)
+	}
+	p.Air.Mean = air
+	return p
+}
+
+// Periodic follows a plant over the week that repeats itself.
+func Periodic(p thermal.Plant) (*thermal.Course, error) {
+	if err := p.Prepare(); err != nil {
+		return nil, err
+	}
+	return p.Periodic()
+}
+
+// ColdStart follows a plant from a start with all at one temperature, for some time without a pause.
+func ColdStart(p thermal.Plant, theta, seconds float64) (*thermal.Course, error) {
+	p.Spans = []thermal.Span{{From: 0, To: thermal.Week, Load: Mix}}
+	p.Air = thermal.Air{Mean: theta}
+	if err := p.Prepare(); err != nil {
+		return nil, err
+	}
+	return p.March(0, seconds, thermal.State{Oil: theta, Steel: theta}, nil)
+}
+
+// startFor is how long a start is followed.
+const startFor = 12 * units.Hour
+
+// follow fills in the courses and what is read from them.
+func (h *HeatStudy) follow() error {
+	var err error
+	if h.Week, err = h.Plant.Periodic(); err != nil {
+		return err
+	}
+	if h.Hot, err = Periodic(h.With(Mix, h.HotDay)); err != nil {
+		return err
+	}
+	if h.Start, err = ColdStart(h.Plant, h.WinterStart, startFor); err != nil {
+		return err
+	}
+	h.Ready = h.readyAt(h.Start)
+	if h.Needs, err = h.needs(); err != nil {
+		return err
+	}
+	if h.Checks, err = h.checks(); err != nil {
+		return err
+	}
+	h.Tanks, err = h.tanks()
+	return err
+}
+
+// Viscosity returns the kinematic viscosity of the oil [m²/s] at a temperature [K].
+func (h *Heating) Viscosity(theta float64) float64 {
+	if h.Oil.Oil.Nu40 > 0 {
+		return h.Oil.Oil.KinematicViscosity(theta)
+	}
+	return h.Oil.Viscosity / h.Oil.Density
+}
+
+// TemperatureOf returns the temperature [K] at which the oil has a kinematic viscosity [m²/s]; NaN where that is not known.
+func (h *Heating) TemperatureOf(nu float64) float64 {
+	low, high := units.ZeroCelsius-40, units.ZeroCelsius+150
+	if h.Oil.Oil.Nu40 <= 0 || h.Viscosity(low) < nu || h.Viscosity(high) > nu {
+		return math.NaN()
+	}
+	for range 60 {
+		if mid := (low + high) / 2; h.Viscosity(mid) > nu {
+			low = mid
+		} else {
+			high = mid
+		}
+	}
+	return (low + high) / 2
+}
+
+// readyAt returns when a start comes to working viscosity [s], NaN when it does not.
+func (h *HeatStudy) readyAt(c *thermal.Course) float64 {
+	ready := h.TemperatureOf(h.WorkViscosity)
+	if math.IsNaN(ready) {
+		return math.NaN()
+	}
+	for i, v := range c.Oil {
+		if v >= ready {
+			if i == 0 {
+				return 0
+			}
+			return c.T[i-1] + (c.T[i]-c.T[i-1])*(ready-c.Oil[i-1])/(v-c.Oil[i-1])
+		}
+	}
+	return math.NaN()
+}
+
+// CycleRipple is how the oil temperature moves within a cycle of a duty.
+type CycleRipple struct {
+	Duty         string
+	Cycle, Tau   float64 // s
+	Low, High    float64 // K, below and above the mean of the cycle
+	MeanIsEnough bool    // the cycle is short beside the time constant
+}
+
+// meanShare is the share of the time constant up to which the mean heat of a cycle tells the temperature (common practice 0.2 to 0.5).
+const meanShare = 0.2
+
+// ripples checks the averaging time of each duty.
+func (h *HeatStudy) ripples(r *CircuitRun) {
+	b := h.Plant.Body
+	for _, d := range r.Duties {
+		if d.Balance == nil || d.Plot == nil {
+			continue
+		}
+		x := CycleRipple{Duty: d.Duty.Name, Cycle: d.Balance.Cycle, Tau: b.TimeConstant(h.takes())}
+		t, p := heatCourse(d)
+		x.Low, x.High = thermal.Ripple(t, p, b.Capacity(), x.Tau)
+		x.MeanIsEnough = x.Cycle <= meanShare*x.Tau
+		h.Cycles = append(h.Cycles, x)
+	}
+}
+
+// takes is what the cooler takes at one kelvin [W/K] in the mean of the hottest hour of the week, 0 without one.
+func (h *HeatStudy) takes() float64 {
+	w := h.Week
+	if w == nil || w.On <= 0 || w.Cooled <= 0 {
+		return 0
+	}
+	return w.Cooled / w.On / math.Max(1, w.Ran-h.Plant.Air.Mean)
+}
+
+// heatCourse adds up the courses of the heat into the oil.
+func heatCourse(d *DutyRun) (t, p []float64) {
+	for i, ch := range d.Plot.Channels {
+		if ch.Role == circuit.Loss && ch.Sink == circuit.ToOil && len(d.Plot.Powers[i].T) > len(t) {
+			t = d.Plot.Powers[i].T
+		}
+	}
+	p = make([]float64, len(t))
+	for i, ch := range d.Plot.Channels {
+		if ch.Role != circuit.Loss || ch.Sink != circuit.ToOil {
+			continue
+		}
+		for k := range t {
+			p[k] += d.Plot.Powers[i].At(t[k])
+		}
+	}
+	return t, p
+}
+
+// describe says in words how the table was made.
+func (h *HeatStudy) describe() string {
+	text := fmt.Sprintf("solved at %d oil temperatures", h.Points)
+	if h.Few != "" {
+		text += " (" + h.Few + ")"
+	}
+	return text
+}

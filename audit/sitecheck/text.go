@@ -1,0 +1,93 @@
+package sitecheck
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"barlitre/audit"
+	"barlitre/machines/units"
+)
+
+// Intro says how the plan is used.
+const Intro = "Bring the machine into the four states, one after the other, oil warm, and read every point in each. Values are means by state that a steady balance of the drawing gives; where a range stands, the needle moves in it. A tenth up or down, or a few bar, means nothing."
+
+// Cautions hold for the whole check.
+const Cautions = "Only with the owner's permit and by the rules of the place. Guards stay closed, nobody reaches in, a person who knows the machine runs it. Before a fitting is opened: motor off and locked, loads lowered or propped, accumulators discharged, zero seen on a gauge. Relief and load-holding valves are not touched. An oil jet goes through gloves and skin: oil under the skin is for a surgeon at once."
+
+// StateText says how the machine is brought into its states.
+func StateText() string {
+	var parts []string
+	for _, s := range States() {
+		parts = append(parts, s.Name+" ("+s.Text+")")
+	}
+	return strings.Join(parts, ", ") + "."
+}
+
+// Shown writes what the model says of a point in a state.
+func (p *Plan) Shown(pt Point, state string) string { return p.shown(pt, p.Sound[at(state, pt.Name)]) }
+
+func (p *Plan) shown(pt Point, v Value) string {
+	if math.IsNaN(v.Mean) {
+		return "–"
+	}
+	u := units.Preferred(pt.Dim, p.System)
+	if v.High-v.Low > spread(pt, v.Mean) && pt.Dim == units.Pressure {
+		return number(u.FromSI(math.Max(v.Low, 0))) + " to " + number(u.FromSI(v.High)) + "\u202f" + u.Label()
+	}
+	return number(u.FromSI(v.Mean)) + "\u202f" + u.Label()
+}
+
+// number rounds as a gauge is read.
+func number(x float64) string {
+	switch a := math.Abs(x); {
+	case a < 0.05:
+		return "0"
+	case a < 10:
+		return units.Number(math.Round(10*x)/10, 2)
+	case a < 1000:
+		return fmt.Sprintf("%.0f", x)
+	}
+	return units.Number(x, 3)
+}
+
+// Bad says what the likeliest fault looks like at a point.
+func (p *Plan) Bad(pt Point) string {
+	var parts []string
+	for _, s := range p.signs(pt) {
+		if len(parts) == 2 || len(parts) == 1 && s.strength < 1e6 {
+			break
+		}
+		parts = append(parts, fmt.Sprintf("%s %s: %s", s.state, p.shown(pt, Value{s.with, s.with, s.with}), s.fault.Name))
+	}
+	switch {
+	case len(parts) > 0:
+		return strings.Join(parts, "; ")
+	case pt.Dim == units.Temperature && pt.Block != "":
+		return "warmer than the tank: oil passes " + pt.Block
+	case pt.Dim == units.Temperature:
+		return "above 65 °C: cooler off or dirty; below 35 °C: overcooled"
+	}
+	switch pt.What {
+	case "load pressure":
+		return "much more: a guide jams or the load is heavier; much less: another load than in the duty"
+	case "load signal":
+		return "pressure while nothing moves: the signal line is not relieved"
+	}
+	return "far from the values beside it: compare drawing and settings"
+}
+
+// ReadTable sets the readings beside the model.
+func (p *Plan) ReadTable(v Verdict) audit.Table {
+	t := audit.Table{Title: "What was read", Head: []string{"state", "point", "read", "model", "says"}}
+	for _, r := range v.Readings {
+		pt, _ := p.point(r.Point)
+		u := units.Preferred(pt.Dim, p.System)
+		model := "–"
+		if !math.IsNaN(r.Model) {
+			model = units.Format(r.Model, u, 3)
+		}
+		t.Rows = append(t.Rows, audit.TableRow{Cells: []string{r.State, pt.What + " " + r.Point, units.Format(r.Read, u, 3), model, r.Words}})
+	}
+	return t
+}
