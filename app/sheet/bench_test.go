@@ -248,3 +248,8 @@ func (b *bench) field(key string) *numberRow {
 }
 
 func close(a, b, eps float64) bool { return math.Abs(a-b) <= eps }
+
+// PickFile and SaveFirst are not asked for by sheets.
+func (b *bench) PickFile(_, _ string, _ []string, _ func(path string)) { b.t.Error("asked for a file") }
+
+func (b *bench) SaveFirst(why string, _ func()) { b.t.Error("asked to save first: " + why) }
