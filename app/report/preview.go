@@ -109,6 +109,9 @@ func (p *preview) load() {
 		p.pages.Refresh()
 		return
 	}
+	if len(p.pages.Objects) == 0 {
+		p.say("The pages are being laid out …", "")
+	}
 	pixels := width
 	if c := fyne.CurrentApp().Driver().CanvasForObject(p.pages); c != nil {
 		pixels *= c.Scale()
