@@ -83,6 +83,7 @@ func New(app fyne.App, opt document.Options, stations ...func(station.Context) s
 		}
 	})
 	f.dumper = newDumper(f)
+	countFrames()
 	return f
 }
 

@@ -139,7 +139,7 @@ func (s *strip) lanes(d *duty.Duty, axes []duty.Axis) figures.Plot {
 	return plot
 }
 
-func (s *strip) moved() { s.figure.Refresh() }
+func (s *strip) moved() { s.figure.RefreshOver() }
 
 // clockFigure is the strip's figure: the clock follows click, drag and arrow keys.
 type clockFigure struct {
@@ -157,6 +157,7 @@ func newClockFigure(s *strip) *clockFigure {
 		}
 		return parts
 	})
+	c.Under = s.drawUnder
 	c.ExtendBaseWidget(c)
 	return c
 }

@@ -13,16 +13,21 @@ import (
 	"barlitre/machines/units"
 )
 
-// draw draws the tracks and the clock with the values at it.
-func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
+// drawUnder draws the tracks, which stay while the clock moves.
+func (s *strip) drawUnder(p pen.Pen, w, h float64) {
 	pal := s.f.Palette()
 	pen.Rect(p, 0, 0, w, h, pal.Card, pen.Stroke{})
 	if len(s.plot.Lanes) == 0 {
 		p.Text(pen.Pt{X: 16, Y: h / 2}, "The duty has no tracks. Give the axes motion and load on the Duty station.", 12.5, pal.Secondary, pen.Left, false)
-		return nil
+		return
 	}
 	s.drawTracks(p, w, h, pal)
-	if s.area.W <= 0 {
+}
+
+// draw draws the clock with the values at it over the tracks.
+func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
+	pal := s.f.Palette()
+	if len(s.plot.Lanes) == 0 || s.area.W <= 0 {
 		return nil
 	}
 	x := 6 + s.area.XAt(s.f.clock)
@@ -31,6 +36,7 @@ func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
 	p.Polyline([]pen.Pt{{X: x - 5, Y: 1}, {X: x + 5, Y: 1}, {X: x, Y: 9}}, true, pal.Danger, pen.Stroke{})
 	// The values stand over the numbers of the axis: there they hide no phase and no track.
 	text := s.f.Local(s.atClock())
+	text = pen.Shorten(text, 11, true, w-s.area.X-20)
 	tw := p.TextWidth(text, 11, true) + 10
 	bx := max(6+s.area.X, min(w-4-tw, x-tw/2))
 	pen.RoundRect(p, bx, foot, tw, 17, 3, pal.Ground, pen.Stroke{W: 1, C: pal.Danger})

@@ -29,6 +29,7 @@ type bench struct {
 	win     fyne.Window
 	doc     *document.Document
 	queue   chan document.Event
+	posted  chan func() // of what is laid behind the window
 	s       *Station
 	clock   float64
 	duty    int
@@ -50,7 +51,9 @@ var _ station.Context = (*bench)(nil)
 
 func newBench(t testing.TB, sample string, size fyne.Size) *bench {
 	t.Helper()
-	b := &bench{t: t, queue: make(chan document.Event, 1000), circuit: -1}
+	b := &bench{t: t, queue: make(chan document.Event, 1000), posted: make(chan func(), 1000), circuit: -1}
+	post = func(f func()) { b.posted <- f }
+	t.Cleanup(func() { post = fyne.Do })
 	b.app = test.NewTempApp(t)
 	b.app.Settings().SetTheme(widgets.Theme{})
 	b.doc = document.New(document.Options{Notify: func(e document.Event) { b.queue <- e }})
@@ -78,6 +81,8 @@ func (b *bench) pump() {
 		select {
 		case e := <-b.queue:
 			b.told(e)
+		case f := <-b.posted:
+			f()
 		default:
 			return
 		}
@@ -102,10 +107,12 @@ func (b *bench) solved() {
 	b.t.Helper()
 	deadline := time.After(30 * time.Second)
 	for {
-		if running, _, _ := b.doc.Solving(); !running && len(b.queue) == 0 {
+		if running, _, _ := b.doc.Solving(); !running && len(b.queue) == 0 && !b.laying() {
 			return
 		}
 		select {
+		case f := <-b.posted:
+			f()
 		case e := <-b.queue:
 			b.told(e)
 		case <-time.After(5 * time.Millisecond):
@@ -114,6 +121,8 @@ func (b *bench) solved() {
 		}
 	}
 }
+
+func (b *bench) laying() bool { return b.s.editors[0].laying.busy || b.s.editors[1].laying.busy }
 
 func (b *bench) Doc() *document.Document { return b.doc }
 func (b *bench) Window() fyne.Window     { return b.win }

@@ -3,6 +3,7 @@ package sheet
 import (
 	"fmt"
 	"image"
+	"image/color"
 	"time"
 
 	"fyne.io/fyne/v2"
@@ -55,6 +56,7 @@ type editor struct {
 	hover   hover
 	wire    wire
 	lift    lift
+	laying  laying
 	join    keyLine
 
 	frames  int // drawn so far
@@ -66,7 +68,7 @@ type editor struct {
 	pen    *pen.Raster
 	over   *fyne.Container
 	band   *canvas.Rectangle
-	ring   *canvas.Rectangle
+	ring   *widgets.Rim
 	clip   *container.Clip
 	copied *widgets.Button // begins a proposal, on the empty second sheet
 }
@@ -81,7 +83,7 @@ func newEditor(s *Station, index int) *editor {
 	e := &editor{s: s, index: index, circuit: -1, line: -1, group: -1, zoom: legendAt, selected: map[string]bool{}, notes: map[int]bool{}, fitted: true}
 	e.raster = canvas.NewRaster(e.paint)
 	e.raster.ScaleMode = canvas.ImageScalePixels
-	e.band, e.ring = canvas.NewRectangle(nil), canvas.NewRectangle(nil)
+	e.band, e.ring = canvas.NewRectangle(nil), widgets.NewRim()
 	e.band.Hide()
 	e.ring.Hide()
 	e.over = container.NewWithoutLayout(e.band, e.ring)
@@ -100,7 +102,7 @@ func newEditor(s *Station, index int) *editor {
 func (e *editor) show(at int, c *circuit.Circuit) {
 	e.cancel()
 	e.hover.hide()
-	kept, before := e.keep(c), e.plain
+	kept, before, rough := e.keep(c), e.plain, e.sheet
 	e.selectLine(-1)
 	e.selectMarks(nil, -1)
 	other := c == nil || e.name != c.Name
@@ -108,10 +110,22 @@ func (e *editor) show(at int, c *circuit.Circuit) {
 	if c == nil {
 		return
 	}
-	e.name, e.plain = c.Name, before.Next(c)
+	e.name, e.laying.ready = c.Name, nil
+	if large(c) {
+		if other {
+			rough = nil
+		}
+		e.plain = rough.Rough(c)
+	} else {
+		e.plain = before.Next(c)
+		e.laying.exact = nil
+	}
 	e.sheet = e.plain
 	e.label(e.s.solved(c.Name))
 	e.boxes, e.ports = boxesOf(e.sheet), e.sheet.Ports()
+	if large(c) {
+		e.layBehind()
+	}
 	for id := range e.selected {
 		if c.Block(id) == nil {
 			delete(e.selected, id)
@@ -133,7 +147,12 @@ func (e *editor) label(run *audit.CircuitRun) {
 	if e.plain == nil || run == nil || run == e.labels {
 		return
 	}
-	e.labels, e.sheet = run, e.plain.Labelled(run.Duties...)
+	e.labels = run
+	if large(e.drawn) {
+		e.layBehind()
+		return
+	}
+	e.sheet = e.plain.Labelled(run.Duties...)
 	if e.fitted {
 		e.s.fitAll()
 	}
@@ -165,7 +184,7 @@ func (e *editor) recolour() {
 	fill := pal.Gain
 	fill.A = 30
 	e.band.FillColor, e.band.StrokeColor, e.band.StrokeWidth = fill, pal.Gain, 1
-	e.ring.StrokeColor, e.ring.StrokeWidth, e.ring.CornerRadius = pal.Gain, 2, 4
+	e.ring.Dress(color.Transparent, pal.Gain, 2, 4, false)
 	e.hover.recolour()
 	e.wire.recolour()
 	e.lift.recolour()

@@ -9,7 +9,6 @@ import (
 	"strings"
 
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
@@ -30,10 +29,9 @@ type findings struct {
 	cures   []*cure.Cure // of list, nil where there is none
 	at      int          // where the keys are
 	focused bool
-	paper   *canvas.Rectangle
+	paper   *widgets.Rim
 	head    *widgets.Figure
 	figure  *widgets.Figure
-	ring    *canvas.Rectangle
 	scroll  *container.Scroll
 	content *fyne.Container
 	places  []widgets.Part
@@ -50,8 +48,7 @@ var ranks = []circuit.Level{circuit.Stops, circuit.Warns, circuit.Caution, circu
 var levelWords = map[circuit.Level]string{circuit.Stops: "Stops", circuit.Warns: "Warning", circuit.Caution: "Caution", circuit.Note: "Note"}
 
 func newFindings(s *Station) *findings {
-	f := &findings{s: s, paper: canvas.NewRectangle(nil), ring: canvas.NewRectangle(nil)}
-	f.ring.Hide()
+	f := &findings{s: s, paper: widgets.NewRim()}
 	f.figure = widgets.NewFigure(fyne.NewSize(100, 20), f.draw)
 	f.figure.Tapped = func(p widgets.Part, _, _ float64) {
 		number, isCure := strings.CutSuffix(p.Name, cureSuffix)
@@ -68,7 +65,7 @@ func newFindings(s *Station) *findings {
 	f.ExtendBaseWidget(f)
 	widgets.Name(f, "sheet.findings")
 	f.scroll = container.NewVScroll(f)
-	f.content = container.NewStack(f.paper, container.New(inset{4}, container.NewBorder(f.head, nil, nil, nil, f.scroll)), f.ring)
+	f.content = container.NewStack(f.paper, container.New(inset{4}, container.NewBorder(f.head, nil, nil, nil, f.scroll)))
 	return f
 }
 
@@ -335,7 +332,7 @@ func (f *findings) MinSize() fyne.Size { return f.figure.MinSize() }
 func (f *findings) CreateRenderer() fyne.WidgetRenderer { return widget.NewSimpleRenderer(f.figure) }
 
 func (f *findings) recolour() {
-	paper(f.paper, f.s.ctx.Palette())
+	paper(f.paper, f.s.ctx.Palette(), true)
 	f.head.Refresh()
 	f.figure.Refresh()
 }

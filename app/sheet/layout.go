@@ -4,7 +4,6 @@ import (
 	"fmt"
 
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/container"
 
 	"barlitre/app/widgets"
@@ -173,7 +172,7 @@ func (s *Station) edgeText() (text string, bad bool) {
 type card struct {
 	s       *Station
 	index   int
-	paper   *canvas.Rectangle
+	paper   *widgets.Rim
 	head    *widgets.Figure
 	picker  *picker
 	content *fyne.Container
@@ -182,7 +181,7 @@ type card struct {
 }
 
 func newCard(s *Station, index int) *card {
-	c := &card{s: s, index: index, paper: canvas.NewRectangle(nil)}
+	c := &card{s: s, index: index, paper: widgets.NewRim()}
 	c.head = widgets.NewFigure(fyne.NewSize(120, 26), c.drawHead)
 	c.head.Tapped = func(widgets.Part, float64, float64) {
 		if e := s.editors[index]; e.circuit >= 0 {
@@ -198,9 +197,24 @@ func newCard(s *Station, index int) *card {
 	}
 	head := container.NewBorder(nil, nil, nil, right, c.head)
 	inner := container.NewBorder(head, nil, nil, nil, s.editors[index])
-	c.content = container.NewStack(c.paper, container.New(inset{6}, inner))
+	c.content = container.New(cardLayout{c, inset{6}}, c.paper, inner)
 	return c
 }
+
+// cardLayout leaves the paper out where the drawing covers it.
+type cardLayout struct {
+	c     *card
+	inset inset
+}
+
+func (l cardLayout) Layout(o []fyne.CanvasObject, size fyne.Size) {
+	put(o[0], 0, 0, size.Width, size.Height)
+	l.inset.Layout(o[1:], size)
+	e := l.c.s.editors[l.c.index]
+	l.c.paper.SetHole(o[1].Position().Add(e.Position()), e.Size())
+}
+
+func (l cardLayout) MinSize(o []fyne.CanvasObject) fyne.Size { return l.inset.MinSize(o[1:]) }
 
 // inset leaves room round its objects.
 type inset struct{ by float32 }
@@ -253,12 +267,11 @@ func (c *card) reload() {
 
 func (c *card) recolour() {
 	pal := c.s.ctx.Palette()
-	paper(c.paper, pal)
+	paper(c.paper, pal, false)
 	c.head.Refresh()
 }
 
-// paper makes a rectangle a card.
-func paper(r *canvas.Rectangle, pal figures.Palette) {
-	r.FillColor, r.StrokeColor, r.StrokeWidth, r.CornerRadius = pal.Card, pal.Edge, 1, 6
-	r.Refresh()
+// paper makes a rim a card; plain fills its inside.
+func paper(r *widgets.Rim, pal figures.Palette, plain bool) {
+	r.Dress(pal.Card, pal.Edge, 1, 6, plain)
 }

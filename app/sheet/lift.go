@@ -62,6 +62,9 @@ func (e *editor) dragTo(p fyne.Position) {
 	}
 	g.dx, g.dy = dx, dy
 	l := &e.lift
+	if large(e.drawn) {
+		l.tried = true
+	}
 	if !l.tried || l.quick && len(g.notes) == 0 {
 		began := time.Now()
 		e.moved = e.sheet.MoveAll(g.ids, dx, dy)

@@ -46,12 +46,13 @@ func newLive(p *panel) *live {
 	return l
 }
 
-// moved brings the values at the clock in.
-func (l *live) moved() {
-	rows := l.rows()
-	l.figure.SetMin(fyne.NewSize(100, float32(34+19*len(rows))))
+// moved brings the values at the clock in, and tells whether they take another height.
+func (l *live) moved() (grown bool) {
+	before := l.figure.MinSize()
+	l.figure.SetMin(fyne.NewSize(100, float32(34+19*len(l.rows()))))
 	l.figure.Refresh()
 	l.plot.SetClock(l.p.s.ctx.Clock())
+	return l.figure.MinSize() != before
 }
 
 // rows lists the live values of what the panel shows.

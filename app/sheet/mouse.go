@@ -151,6 +151,7 @@ func (e *editor) MouseUp(*desktop.MouseEvent) {
 		return // DragEnd follows
 	}
 	e.gesture = gesture{}
+	defer e.takeLaid()
 	if g.kind != pressed {
 		return
 	}
@@ -184,6 +185,7 @@ func (e *editor) clickLine(net int, at fyne.Position) {
 func (e *editor) DragEnd() {
 	g := e.gesture
 	e.gesture = gesture{}
+	defer e.takeLaid()
 	switch g.kind {
 	case banding:
 		e.endBand(g)

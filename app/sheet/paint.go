@@ -29,6 +29,9 @@ func (e *editor) paint(w, h int) image.Image {
 		e.pen = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
 	}
 	e.frames++
+	if e.index == e.s.active {
+		widgets.Frames.Add(1)
+	}
 	size := e.Size()
 	on := func(sh *figures.Sheet, clear bool) {
 		e.pen.Reset(e.pen.Image())

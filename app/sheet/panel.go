@@ -5,7 +5,6 @@ import (
 	"strings"
 
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/container"
 
 	"barlitre/app/station"
@@ -18,7 +17,7 @@ import (
 // panel shows the selected block, or with none the circuit.
 type panel struct {
 	s       *Station
-	paper   *canvas.Rectangle
+	paper   *widgets.Rim
 	head    *widgets.Figure
 	list    *fyne.Container
 	scroll  *container.Scroll
@@ -45,7 +44,7 @@ type panel struct {
 }
 
 func newPanel(s *Station) *panel {
-	p := &panel{s: s, paper: canvas.NewRectangle(nil), drafts: map[string]string{}, expanded: map[circuit.Section]bool{}}
+	p := &panel{s: s, paper: widgets.NewRim(), drafts: map[string]string{}, expanded: map[circuit.Section]bool{}}
 	p.head = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 40), p.drawHead), "sheet.title")
 	p.head.Tapped = func(widgets.Part, float64, float64) {
 		if _, b := p.at(); b != nil {
@@ -116,8 +115,9 @@ func (p *panel) changed(w station.What) {
 		p.bringParts()
 		p.bringCompare()
 	}
-	p.live.moved()
-	p.relay()
+	if p.live.moved() || w&^station.Clock != 0 {
+		p.relay()
+	}
 }
 
 // key names what the rows are made for: a block of another kind under the same name
@@ -303,4 +303,4 @@ func (p *panel) titles() (title, sub string) {
 	return b.ID, sub + " · " + c.Name + " · F2 renames"
 }
 
-func (p *panel) recolour() { paper(p.paper, p.s.ctx.Palette()) }
+func (p *panel) recolour() { paper(p.paper, p.s.ctx.Palette(), true) }

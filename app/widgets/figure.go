@@ -33,10 +33,12 @@ type Figure struct {
 	Tapped   func(part Part, x, y float64) // part.Name == "" beside all parts
 	Hover    func(part Part, inside bool)
 	Ground   func() color.Color
+	Under    func(p pen.Pen, w, h float64) // drawn below, and kept as long as only RefreshOver asks for a frame
 	draw     Draw
 	min      fyne.Size
 	raster   *canvas.Raster
 	pen      *pen.Raster
+	kept     *image.RGBA // what lies below
 	parts    []Part
 	over     string
 	overPart Part
@@ -65,12 +67,13 @@ func (f *Figure) paint(w, h int) image.Image {
 		f.pen = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
 	}
 	f.pen.Reset(f.pen.Image())
-	var ground color.Color = color.Transparent
-	if f.Ground != nil {
-		ground = f.Ground()
-	}
-	f.pen.Clear(color.NRGBAModel.Convert(ground).(color.NRGBA))
 	size := f.Size()
+	below := f.kept != nil && f.kept.Rect == f.pen.Image().Rect
+	if below {
+		copy(f.pen.Image().Pix, f.kept.Pix)
+	} else {
+		f.clear()
+	}
 	if size.Width <= 0 || size.Height <= 0 {
 		return f.pen.Image()
 	}
@@ -78,6 +81,11 @@ func (f *Figure) paint(w, h int) image.Image {
 	// on a smaller sheet, and enlarged.
 	scale := float64(Scale())
 	f.pen.Push(0, 0, float64(w)/float64(size.Width)*scale)
+	if f.Under != nil && !below {
+		f.Under(f.pen, float64(size.Width)/scale, float64(size.Height)/scale)
+		f.kept = image.NewRGBA(f.pen.Image().Rect)
+		copy(f.kept.Pix, f.pen.Image().Pix)
+	}
 	f.parts = f.draw(f.pen, float64(size.Width)/scale, float64(size.Height)/scale)
 	f.pen.Pop()
 	for i := range f.parts {
@@ -85,6 +93,14 @@ func (f *Figure) paint(w, h int) image.Image {
 		p.X, p.Y, p.W, p.H = p.X*scale, p.Y*scale, p.W*scale, p.H*scale
 	}
 	return f.pen.Image()
+}
+
+func (f *Figure) clear() {
+	var ground color.Color = color.Transparent
+	if f.Ground != nil {
+		ground = f.Ground()
+	}
+	f.pen.Clear(color.NRGBAModel.Convert(ground).(color.NRGBA))
 }
 
 // At returns the topmost part at a point.
@@ -151,7 +167,14 @@ func (f *Figure) MinSize() fyne.Size {
 }
 
 // Refresh draws anew.
-func (f *Figure) Refresh() { f.raster.Refresh(); f.BaseWidget.Refresh() }
+func (f *Figure) Refresh() {
+	f.kept = nil
+	f.raster.Refresh()
+	f.BaseWidget.Refresh()
+}
+
+// RefreshOver draws anew, but for what lies below.
+func (f *Figure) RefreshOver() { f.raster.Refresh() }
 
 // CreateRenderer is for the toolkit.
 func (f *Figure) CreateRenderer() fyne.WidgetRenderer { return widget.NewSimpleRenderer(f.raster) }

@@ -1,0 +1,88 @@
+//go:build unix
+
+package sheet
+
+import (
+	"testing"
+
+	"fyne.io/fyne/v2"
+
+	"barlitre/audit/figures"
+)
+
+// Drawn is what a sheet tells of itself: where its lines and blocks are.
+func drawn(sh *figures.Sheet) (out [][2][2]float64) {
+	for n := range sh.Nets() {
+		for _, p := range sh.Pieces(n) {
+			a, b, _ := sh.PieceEnds(p)
+			out = append(out, [2][2]float64{a, b})
+		}
+	}
+	return out
+}
+
+// A block of a large circuit moves at once, with plain elbows at its ports alone; the lines
+// that are laid then are those of the file opened anew.
+func TestLargeMoveLaysBehind(t *testing.T) {
+	b := openLarge(t, 90)
+	e := b.s.editors[0]
+	was := e.sheet
+	x, y, _ := was.At("V2")
+	b.drag(0, b.middle(0, "V2"), b.middle(0, "V2").AddXY(float32(5*e.zoom), float32(3*e.zoom)), 1, 0)
+	if !e.laying.busy || e.sheet == was {
+		t.Fatal("nothing is laid behind the window")
+	}
+	if nx, ny, _ := e.sheet.At("V2"); nx != x+5 || ny != y+3 {
+		t.Errorf("V2 is at %g, %g while the lines are laid, was at %g, %g", nx, ny, x, y)
+	}
+	if n := e.sheet.Nets(); n != was.Nets() {
+		t.Errorf("%d lines while they are laid, were %d", n, was.Nets())
+	}
+	if hit, _, _ := e.hit(b.middle(0, "V2")); hit != "V2" {
+		t.Errorf("at V2 lies %q", hit)
+	}
+	stayed, before := drawn(e.sheet), map[[2][2]float64]bool{}
+	for _, p := range drawn(was) {
+		before[p] = true
+	}
+	same := 0
+	for _, p := range stayed {
+		if before[p] {
+			same++
+		}
+	}
+	if same == len(stayed) || same < len(stayed)*9/10 {
+		t.Errorf("%d of %d pieces of line stayed", same, len(stayed))
+	}
+	b.solved()
+	want := figures.NewSheet(e.drawn).Labelled(e.labels.Duties...)
+	if got, full := drawn(e.sheet), drawn(want); len(got) != len(full) {
+		t.Fatalf("%d pieces of line, laid anew %d", len(got), len(full))
+	} else {
+		for i := range got {
+			if got[i] != full[i] {
+				t.Fatalf("piece %d is %v, laid anew %v", i, got[i], full[i])
+			}
+		}
+	}
+}
+
+// What is laid during a gesture is shown when it ends.
+func TestLaidDuringGesture(t *testing.T) {
+	b := openLarge(t, 90)
+	e := b.s.editors[0]
+	at := b.middle(0, "V2")
+	b.drag(0, at, at.AddXY(float32(5*e.zoom), 0), 1, 0)
+	e.MouseDown(event(b.middle(0, "C1"), 1, 0))
+	b.dragOn(0, b.middle(0, "C1"), b.middle(0, "C1").AddXY(float32(4*e.zoom), 0))
+	rough := e.sheet
+	b.solved()
+	if e.sheet != rough || e.laying.ready == nil {
+		t.Fatal("the sheet changed under a drag")
+	}
+	e.TypedKey(&fyne.KeyEvent{Name: fyne.KeyEscape})
+	e.DragEnd()
+	if e.sheet == rough || e.laying.ready != nil {
+		t.Error("what was laid is not shown after the drag")
+	}
+}
