@@ -38,6 +38,8 @@ func (s *Solution) Requests(system units.System) []Request {
 	for _, c := range s.Circuits {
 		r := Request{Circuit: c.Circuit.Name}
 		switch h := c.Warmth; {
+		case h == nil && s.Pending:
+			r.Missing = "The oil temperature is still being worked out."
 		case h == nil:
 			r.Missing = "The file says nothing of tank and cooler; give the section heat, at least the oil in the tank."
 		case h.Week == nil:

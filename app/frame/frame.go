@@ -160,7 +160,10 @@ func (f *Frame) told(e document.Event) {
 	case document.Edited:
 		f.keepInRange()
 		f.changed(station.Model)
-	case document.Solved:
+	case document.Solved, document.Warmed:
+		if e.Err != nil {
+			f.Say(e.Err.Error())
+		}
 		f.solution, _ = f.doc.Solution()
 		f.changed(station.Solution)
 	case document.Solving:
