@@ -11,6 +11,9 @@ import (
 func (s *Solution) heatSectionOf(c *CircuitRun) (section HeatSection, ok bool) {
 	section = s.File.HeatOf(s.File.Circuit(c.Circuit.Name))
 	solved := slices.ContainsFunc(c.Duties, func(d *DutyRun) bool { return d.Balance != nil })
+	if section.Word("cooler_place") == placeOffLine && section.Drawn.Block != "" {
+		section.loopAsDrawn(c)
+	}
 	return section, section.Given && solved
 }
 
