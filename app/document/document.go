@@ -56,6 +56,7 @@ type Document struct {
 	total    int
 	warming  bool // the oil temperatures of solution are being worked out
 	advice   adviser
+	faults   faults
 
 	session *session // nil when nothing unsaved is kept
 

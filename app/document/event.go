@@ -21,6 +21,7 @@ const (
 	Autosaved                           // Revision is kept against a crash
 	AutosaveFailed                      // Err; it is tried again after the next edit
 	Advising                            // Done of Total, of what is to be put right first and measured
+	FaultsFound                         // Faults has those of the present solution
 	Advised                             // Advice has it, or Err says why not
 )
 

@@ -135,6 +135,9 @@ func (f *Frame) changed(w station.What) {
 		f.menu.update(f)
 		f.title()
 	}
+	if w.Has(station.Advice) {
+		f.rail.refresh()
+	}
 	if w.Has(station.Model | station.Settings | station.Selection) {
 		f.strip.reload()
 	}
@@ -168,7 +171,7 @@ func (f *Frame) told(e document.Event) {
 		f.changed(station.Solution)
 	case document.Solving:
 		f.verdict.Refresh()
-	case document.Advising, document.Advised:
+	case document.Advising, document.Advised, document.FaultsFound:
 		f.changed(station.Advice)
 	default:
 		if e.Err != nil {
@@ -315,11 +318,16 @@ func (f *Frame) theme() widgets.Theme {
 	return widgets.Theme{Dark: f.settings.dark, Scale: f.settings.scale}
 }
 
-// Go shows a station by name.
+// Go shows a station by name, or a page of it by "station/page".
 func (f *Frame) Go(name string) {
+	name, page, _ := strings.Cut(name, "/")
 	for i, s := range f.stations {
-		if s.Name() == name {
-			f.show(i)
+		if s.Name() != name {
+			continue
+		}
+		f.show(i)
+		if p, ok := s.(station.Paged); ok && page != "" {
+			p.ShowPage(page)
 		}
 	}
 }

@@ -47,6 +47,12 @@ type Station interface {
 	Help() string
 }
 
+// Paged is a station of several pages.
+type Paged interface {
+	// ShowPage brings a page to the front by the name on its button.
+	ShowPage(name string)
+}
+
 // View says how sheets show results: by which signs, and of what time their heat is.
 type View struct {
 	Cycle bool          // discs show a cycle instead of an instant
@@ -90,7 +96,7 @@ type Context interface {
 	Local(text string) string
 	Palette() figures.Palette
 
-	// Go shows a station by name.
+	// Go shows a station by name, or a page of one that is Paged by "station/page".
 	Go(name string)
 	// Keep takes a dialog that the station has shown: Escape then closes it, and the menu waits.
 	Keep(d dialog.Dialog)
