@@ -66,6 +66,9 @@ func printDecision(w io.Writer, d audit.Decision) {
 		rows = append(rows, []string{f.Name, f.Text})
 	}
 	table(w, rows)
+	if d.Oil != "" {
+		wrap(w, d.Oil)
+	}
 	for _, s := range d.Warnings {
 		wrap(w, "⚠ "+s)
 	}

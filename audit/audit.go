@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"io"
 	"runtime"
+	"slices"
 	"sync"
 
 	"barlitre/circuit"
@@ -19,6 +20,8 @@ type Options struct {
 	// CSV opens the file that takes every time step of one circuit and duty; nil = none
 	// are written. It is called from goroutines of Solve, with the name TableName makes.
 	CSV func(name string) (io.WriteCloser, error)
+	// Before is the solution of the audit as it was, nil without one: see SolveEnergy.
+	Before *Solution
 }
 
 // Solution is a solved audit file: every circuit over every duty, and what follows.
@@ -29,6 +32,8 @@ type Solution struct {
 	Oil, Air    float64 // K
 	Circuits    []*CircuitRun
 	Comparisons []*Comparison
+	// Pending says that oil temperatures are still to be worked out, by Warm.
+	Pending bool
 }
 
 // CircuitRun is one circuit over all duties.
@@ -45,6 +50,9 @@ type CircuitRun struct {
 	Warmth   *HeatStudy // how warm its oil gets; nil where the file says nothing of tank and cooler
 	// Extrapolated is the share of the energy of a machine at states outside its measured points, by block.
 	Extrapolated map[string]float64
+
+	noted    []circuit.Finding // by the runs; Findings has what follows from them as well
+	fanShare float64           // of its power that a fan switched by the thermostat is booked with
 }
 
 // DutyRun is one circuit over one duty.
@@ -62,20 +70,53 @@ type DutyRun struct {
 	Exchanges   []Exchange             // between machines on one shaft
 	Services    []ServiceRun
 	Throughput  map[string]Throughput // of machines and drives, by block, over all its cycles
+
+	machine *Balance // Balance and Plot without what the cooling draws
+	courses *Plot
 }
 
-// Solve runs every circuit of the file over every duty and draws up the balances.
+// Solve runs every circuit of the file over every duty and draws up the balances, and then works out how warm the oil gets.
 // A circuit that cannot be solved keeps its findings, and the others are solved all
 // the same. The error is that of the context, of the oil, or of a CSV file.
 func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
+	s, err := SolveEnergy(ctx, f, opt)
+	if err != nil {
+		return nil, err
+	}
+	return s.Warm(ctx)
+}
+
+// SolveEnergy is Solve without the oil temperatures, for who wants to see the energy first; where they are still to be worked
+// out, the solution is Pending, and Warm does it. Until then a fan switched by a thermostat is booked with the share of its power
+// that it had in opt.Before, with nothing where there is none.
+func SolveEnergy(ctx context.Context, f *File, opt Options) (*Solution, error) {
 	s, err := newSolution(f)
 	if err != nil {
 		return nil, err
 	}
-	ctx, cancel := context.WithCancel(ctx)
-	defer cancel()
 	p := &progress{tell: opt.Progress, total: progressParts * len(f.Circuits) * len(f.Duties)}
 	laid := &layouts{}
+	err = s.onAll(ctx, func(ctx context.Context, i int, c *CircuitRun) error {
+		j := &job{solution: s, run: c, number: i + 1, progress: p, layouts: laid, csv: opt.CSV}
+		if err := j.solve(ctx); err != nil {
+			return err
+		}
+		c.noted = c.Findings
+		s.expectCooling(c, opt.Before)
+		return nil
+	})
+	if err != nil {
+		return nil, err
+	}
+	s.Pending = slices.ContainsFunc(s.Circuits, func(c *CircuitRun) bool { _, ok := s.heatSectionOf(c); return ok })
+	s.conclude()
+	return s, nil
+}
+
+// onAll does something for all circuits at the same time. When one fails, the others give up.
+func (s *Solution) onAll(ctx context.Context, do func(ctx context.Context, i int, c *CircuitRun) error) error {
+	ctx, cancel := context.WithCancel(ctx)
+	defer cancel()
 	errs := make([]error, len(s.Circuits))
 	room := make(chan struct{}, runtime.GOMAXPROCS(0))
 	var wg sync.WaitGroup
@@ -85,25 +126,23 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 			defer wg.Done()
 			room <- struct{}{}
 			defer func() { <-room }()
-			j := &job{solution: s, run: c, number: i + 1, progress: p, layouts: laid, csv: opt.CSV}
-			if errs[i] = j.solve(ctx); errs[i] == nil {
-				errs[i] = j.warm(ctx)
-			}
-			if errs[i] != nil {
+			if errs[i] = do(ctx, i, c); errs[i] != nil {
 				cancel()
 			}
 		}()
 	}
 	wg.Wait()
-	if err := firstError(errs); err != nil {
-		return nil, err
-	}
+	return firstError(errs)
+}
+
+// conclude draws the years and what follows from them.
+func (s *Solution) conclude() {
 	for _, c := range s.Circuits {
 		c.Year = year(c.Duties)
 		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
 		c.Money = s.Tariff.YearCost(c.Year)
 		c.Services = c.services()
-		c.Findings = append(c.Findings, c.remarks()...)
+		c.Findings = append(c.noted[:len(c.noted):len(c.noted)], c.remarks()...)
 		c.Findings = append(c.Findings, s.warmthRemarks(c)...)
 		c.Findings = append(c.Findings, s.fuelRemarks(c)...)
 		c.Findings = append(c.Findings, s.extrapolations(c)...)
@@ -111,7 +150,6 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		c.Findings = append(c.Findings, circuitCautions(c)...)
 	}
 	s.Comparisons = s.compare()
-	return s, nil
 }
 
 // firstError prefers the error that made the others give up.
@@ -267,6 +305,7 @@ func (j *job) solveDuty(ctx context.Context, r *DutyRun, number int) error {
 	r.Measured, r.Plot.Measured = compared.results(), measuredTracks(r.Duty, compared)
 	r.Exchanges, r.Services = passed.list(cycles), used.list(watch.SwitchedUses(cycles), cycles)
 	r.Balance = ledger.Balance(r.Duty.Repeats).average(cycles)
+	r.machine, r.courses = r.Balance, r.Plot
 	j.note(r.Duty.Name, watch.Findings())
 	return nil
 }

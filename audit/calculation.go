@@ -20,7 +20,7 @@ func (s *Solution) LossCalculation(circuit, duty int, block, kind string, sys un
 	}
 	p := printer{system: sys, currency: s.Tariff.Currency}
 	c := s.Circuits[circuit]
-	if block == coolingBlock && c.Warmth != nil {
+	if block == coolingBlock {
 		return s.coolingCalculation(p, c, duty, kind)
 	}
 	law := lawOf(c.Circuit, block, kind)

@@ -87,7 +87,7 @@ const Format = "barlitre/1"
 //	  tank_volume: {value: 400 L, origin: name plate}
 //	  air_movement: still | ordinary | forced
 //	  cooler: none | air | water
-//	  cooler_place: return | case drain | flushing | off-line
+//	  cooler_place: return | case drain | flushing | off-line      when not given, where one is drawn
 //	  cooler_rate: 0.4 kW/K          between entering oil and entering air or water
 //	  cooler_flow: 60 L/min          at which that holds; or, in place of both,
 //	  cooler_points: 20 L/min 0.2 kW/K, 60 L/min 0.4 kW/K

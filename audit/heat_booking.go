@@ -2,6 +2,7 @@ package audit
 
 import (
 	"fmt"
+	"slices"
 
 	"barlitre/circuit"
 )
@@ -16,15 +17,15 @@ const (
 // alternator is the efficiency with which an engine makes the electricity of a fan (assumed, common practice, no source).
 const alternator = 0.6
 
-// bookCooling books what the cooling of a circuit draws with each of its duties.
-func (c *CircuitRun) bookCooling() {
-	w := c.Warmth.Week
-	if w.On <= 0 {
-		return
-	}
+// bookCooling books with each of its duties what the cooling of a circuit draws while it runs [W].
+func (c *CircuitRun) bookCooling(fan, loop float64) {
 	for _, d := range c.Duties {
-		if d.Balance != nil {
-			d.addCooling(w.Fan/w.On, w.Loop/w.On, c.fuelOf(d.Balance))
+		if d.machine != nil {
+			b, k := *d.machine, *d.courses
+			b.Losses = slices.Clip(b.Losses)
+			k.Channels, k.Powers = slices.Clip(k.Channels), slices.Clip(k.Powers)
+			d.Balance, d.Plot = &b, &k
+			d.addCooling(fan, loop, c.fuelOf(d.machine))
 		}
 	}
 }
@@ -91,7 +92,8 @@ func (k *Plot) constant(ch circuit.Channel, power float64) {
 
 // coolingCalculation opens what fan or loop pump draw.
 func (s *Solution) coolingCalculation(p printer, c *CircuitRun, duty int, kind string) Calculation {
-	h, w := c.Warmth, c.Warmth.Week
+	section, _ := s.heatSectionOf(c)
+	cooler, ok := s.coolerOf(section)
 	energy := ""
 	formula := "E = P · time"
 	if duty == WholeYear {
@@ -100,18 +102,18 @@ func (s *Solution) coolingCalculation(p printer, c *CircuitRun, duty int, kind s
 	} else if duty >= 0 && duty < len(c.Duties) {
 		energy = s.lossOfCycle(p, c, duty, coolingBlock, kind)
 	}
-	if energy == "" || w == nil {
+	if energy == "" || !ok {
 		return Calculation{}
 	}
-	power, key := w.Fan/w.On, "fan_power"
+	power, key := c.fanShare*cooler.Fan, "fan_power"
 	if kind == loopKind {
-		power, key = w.Loop/w.On, "loop_power"
+		power, key = cooler.LoopPower, "loop_power"
 	}
-	numbers := fmt.Sprintf("P = %s in the mean while the machine runs; %s, %s", p.power(power), HeatKeyNamed(key).Title, originNote(h.Section, key))
+	numbers := fmt.Sprintf("P = %s in the mean while the machine runs; %s, %s", p.power(power), HeatKeyNamed(key).Title, originNote(section, key))
 	if f := c.fuelOfYear(); f > 0 {
 		numbers += fmt.Sprintf("; an engine burns %s for each watt", p.count(f))
 	}
-	if kind == fanKind && h.Plant.Cooler.Switched {
+	if kind == fanKind && cooler.Switched {
 		numbers += "; it runs as far as the thermostat is open, in the week that repeats itself"
 	}
 	return Calculation{formula, joined([]string{numbers, energy}), "section heat of " + fromFile + "; power of the cooling booked beside that of the circuit"}

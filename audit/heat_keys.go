@@ -44,7 +44,7 @@ var HeatKeys = []HeatKey{
 	{Key: "steel_area", Title: "Other warm surfaces", Group: "Tank and machine", Dim: units.Area, Zero: true, Default: "0 m2", Source: "a reserve", Text: "of pipes and machine that give heat to the air as the tank does"},
 
 	{Key: "cooler", Title: "Cooler", Group: "Cooler", Choices: []string{noCooler, airCooler, waterCooler}, Default: noCooler, Text: "what takes the heat: air or water"},
-	{Key: "cooler_place", Title: "Place", Group: "Cooler", Choices: []string{placeReturn, placeDrain, placeFlushing, placeOffLine}, Default: placeReturn, Source: "the usual place", Text: "the line whose oil passes it"},
+	{Key: "cooler_place", Title: "Place", Group: "Cooler", Choices: []string{placeReturn, placeDrain, placeFlushing, placeOffLine}, Default: placeReturn, Source: "where a cooler is drawn in the circuit, else the usual place", Text: "the line whose oil passes it"},
 	{Key: "cooler_rate", Title: "Capacity", Group: "Cooler", Dim: units.HeatCapacityRate, Positive: true, Text: "heat for each kelvin between entering oil and entering air or water"},
 	{Key: "cooler_flow", Title: "At an oil flow of", Group: "Cooler", Dim: units.Flow, Positive: true, Source: "none: the capacity holds with plenty of oil", Text: "at which the capacity is stated"},
 	{Key: "cooler_points", Title: "Capacity by flow", Group: "Cooler", IsText: true, Text: `in place of capacity: "20 L/min 0.15 kW/K, 60 L/min 0.3 kW/K"`},
@@ -95,6 +95,7 @@ type HeatSection struct {
 	Values map[string]circuit.Value
 	Words  map[string]string
 	Points []thermal.RatePoint
+	Drawn  DrawnCooler // in the circuit that the section is of; empty where the section names the place itself
 }
 
 // over returns the section with what another says in its place. A cooler that is stated anew in one way is not stated in the other.
@@ -119,12 +120,21 @@ func (h HeatSection) over(o HeatSection) HeatSection {
 }
 
 // HeatOf returns what holds for a circuit; Given is false when the file says nothing of tank and cooler.
-func (f *File) HeatOf(c *CircuitEntry) HeatSection { return f.Heat.over(c.Heat) }
+func (f *File) HeatOf(c *CircuitEntry) HeatSection {
+	h := f.Heat.over(c.Heat)
+	if h.Words["cooler_place"] == "" {
+		h.Drawn = drawnCooler(c.Circuit)
+	}
+	return h
+}
 
 // Word returns a word, or its default.
 func (h HeatSection) Word(key string) string {
 	if w := h.Words[key]; w != "" {
 		return w
+	}
+	if key == "cooler_place" && h.Drawn.Block != "" {
+		return h.Drawn.Place
 	}
 	return HeatKeyNamed(key).Default
 }

@@ -60,6 +60,13 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 		say(circuit.Note, "the oil runs at %s in the mean, warmer than the %s of the energy balance, and is thinner, %s%s",
 			p.degrees(h.Week.Ran), p.degrees(s.Oil), p.in(h.Viscosity(h.Week.Ran), units.KinematicViscosity, 3), more)
 	}
+	switch d := h.Section.Drawn; {
+	case d.Block == "":
+	case h.Plant.Cooler.None():
+		say(circuit.Note, "%s is drawn, but the section heat says of no cooler what it takes; give cooler and cooler_rate, or nothing is cooled here", d.Block)
+	default:
+		say(circuit.Note, "the cooler stands where %s is drawn (%s); cooler_place in the section heat would say otherwise", d.Block, d.Place)
+	}
 	if dry := h.Dry(); len(dry) > 0 {
 		say(circuit.Note, "no oil passes the cooler (%s) in %s: nothing is cooled while that goes on", h.Section.Word("cooler_place"), circuit.Names(dry))
 	}
@@ -188,6 +195,15 @@ func (c *CircuitRun) coolingDrawn() (sum float64) {
 	return sum
 }
 
+// placeText names the place of the cooler, and where that comes from.
+func (h *HeatStudy) placeText() string {
+	place := h.Section.Word("cooler_place")
+	if b := h.Section.Drawn.Block; b != "" {
+		place += ", as " + b + " is drawn"
+	}
+	return place
+}
+
 func needTable(p printer, runs []*CircuitRun) Table {
 	t := Table{Title: "Cooler needed for oil at " + p.degrees(runs[0].Warmth.Wanted), Formula: "K = (P − UA·(T − Ta)) / (T_in − Ta)", Head: []string{""}}
 	for i, n := range runs[0].Warmth.Needs {
@@ -210,7 +226,7 @@ func needTable(p printer, runs []*CircuitRun) Table {
 		}
 		return "none"
 	})
-	t.Note = "Heat over the difference of the entering temperatures, at the mean flow of its place (" + runs[0].Warmth.Section.Word("cooler_place") +
+	t.Note = "Heat over the difference of the entering temperatures, at the mean flow of its place (" + runs[0].Warmth.placeText() +
 		"). Walls are credited here; fouling, altitude and reserve are not in it: the request sheet lists them."
 	for _, c := range runs {
 		for _, n := range c.Warmth.Needs {

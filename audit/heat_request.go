@@ -38,6 +38,8 @@ func (s *Solution) Requests(system units.System) []Request {
 	for _, c := range s.Circuits {
 		r := Request{Circuit: c.Circuit.Name}
 		switch h := c.Warmth; {
+		case h == nil && s.Pending:
+			r.Missing = "The oil temperature is still being worked out."
 		case h == nil:
 			r.Missing = "The file says nothing of tank and cooler; give the section heat, at least the oil in the tank."
 		case h.Week == nil:
@@ -147,7 +149,11 @@ func requestFlow(p printer, h *HeatStudy) RequestGroup {
 		g.Rows = append(g.Rows, RequestRow{Name: name, Value: value, Note: note})
 	}
 	where := map[string]string{placeReturn: "return line", placeDrain: "case drain", placeFlushing: "flushing line of the closed circuit", placeOffLine: "off-line loop, tank to tank"}[place]
-	add("Position", where, "")
+	note := ""
+	if b := h.Section.Drawn.Block; b != "" {
+		note = "as " + b + " is drawn"
+	}
+	add("Position", where, note)
 	least, mean, most, stands := h.flows()
 	add("Oil flow, least / mean / most", p.in(least, units.Flow, 2)+" / "+p.in(mean, units.Flow, 3)+" / "+p.in(most, units.Flow, 3), "while oil flows; means over parts of the cycle, peaks of milliseconds are not in it")
 	if stands > 0.005 {

@@ -47,6 +47,7 @@ type DecisionRow struct {
 type Decision struct {
 	Base, Proposal string
 	Verdict        string   // in one sentence
+	Oil            string   // what the oil temperature found does to the saving, in a sentence or two; "" where it is not known
 	Warnings       []string // what stands against the verdict, in words
 	Rows           []DecisionRow
 	Outcome        []Figure // saving, money, payback, CO2

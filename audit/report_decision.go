@@ -14,6 +14,10 @@ func (s *Solution) decision(p printer, c *Comparison) Decision {
 	if c.Missing != "" {
 		return d
 	}
+	var stands bool
+	if d.Oil, stands = s.oilText(p, c); stands {
+		d.Warnings = append(d.Warnings, fmt.Sprintf("the saving is more than %s smaller with the oil as warm as it gets: see the sentence on oil temperature", units.Format(oilShare, units.Percent, 2)))
+	}
 	d.Source = groupTable(p, c)
 	d.Rows = s.decisionRows(p, c)
 	d.Outcome = s.outcome(p, c)
@@ -148,9 +152,11 @@ func (s *Solution) outcome(p printer, c *Comparison) []Figure {
 		out = append(out, Figure{name, v, text, calc})
 	}
 	before, after := c.Base.Year.Drawn.Total(), c.Proposal.Year.Drawn.Total()
-	add("saved a year", c.SavedDrawn, p.kWh(c.SavedDrawn), Calculation{"ΔE = E_before − E_after", p.kWh(before) + " − " + p.kWh(after), "energy drawn, same duty, same oil temperature"})
+	oil, _ := s.oilText(p, c)
+	add("saved a year", c.SavedDrawn, p.kWh(c.SavedDrawn), Calculation{"ΔE = E_before − E_after", p.kWh(before) + " − " + p.kWh(after),
+		joined([]string{"energy drawn, same duty, same oil temperature", oil})})
 	if known(c.SavedShare) {
-		add("saved share", c.SavedShare, p.share(c.SavedShare), Calculation{"ΔE / E_before", p.kWh(c.SavedDrawn) + " / " + p.kWh(before), "energy drawn"})
+		add("saved share", c.SavedShare, p.share(c.SavedShare), Calculation{"ΔE / E_before", p.kWh(c.SavedDrawn) + " / " + p.kWh(before), joined([]string{"energy drawn", oil})})
 	}
 	if known(c.MoneyDrawn) {
 		add("money saved on energy drawn a year", c.MoneyDrawn, p.money(c.MoneyDrawn), c.saving("K", "price",

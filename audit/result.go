@@ -55,7 +55,8 @@ type CircuitResult struct {
 	Name     string            `json:"name"`
 	Duties   []DutyResult      `json:"duties"` // those that were solved
 	Year     YearResult        `json:"year"`
-	Services []ServiceResult   `json:"services,omitempty"` // of cylinder-switched machines
+	Services []ServiceResult   `json:"services,omitempty"`        // of cylinder-switched machines
+	Warmth   *WarmthResult     `json:"oil_temperature,omitempty"` // where the file says of tank and cooler
 	Findings []circuit.Finding `json:"findings"`
 }
 
@@ -173,7 +174,7 @@ func (s *Solution) Result() *Result {
 		Recordings: s.File.recordingResults()}
 	for _, c := range s.Circuits {
 		cr := CircuitResult{Name: c.Circuit.Name, Duties: []DutyResult{}, Year: s.yearResult(c),
-			Services: serviceResults(c), Findings: append([]circuit.Finding{}, c.Findings...)}
+			Services: serviceResults(c), Warmth: s.warmthResult(c.Warmth), Findings: append([]circuit.Finding{}, c.Findings...)}
 		for _, d := range c.Duties {
 			if d.Balance != nil {
 				cr.Duties = append(cr.Duties, dutyResult(d))

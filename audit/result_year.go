@@ -143,6 +143,7 @@ type ComparisonResult struct {
 	Returned   PairResult `json:"kWh_returned"`
 	Saved      Number     `json:"kWh_saved"`
 	SavedShare Number     `json:"saved_share"`
+	SavedSo    Number     `json:"kWh_saved_with_oil_so_warm"` // of both circuits; null where it is not known
 	MeanHeat   PairResult `json:"mean_heat_to_oil_W"`
 	Cooler     PairResult `json:"cooler_W_per_K"`
 	SavedHeat  Number     `json:"heat_saved_W"`
@@ -188,6 +189,13 @@ type PublishedResult struct {
 	Explanation string `json:"explanation"`
 }
 
+func (s *Solution) savedSo(c *Comparison) Number {
+	if o, ok := s.oilSaving(c); ok {
+		return Number(o.Saved / kWh)
+	}
+	return Number(math.NaN())
+}
+
 func (s *Solution) comparisonResult(c *Comparison) ComparisonResult {
 	b, p := c.Base, c.Proposal
 	pair := func(x, y float64) PairResult {
@@ -207,7 +215,7 @@ func (s *Solution) comparisonResult(c *Comparison) ComparisonResult {
 		Returned: pair(b.Year.Returned.Total()/kWh, p.Year.Returned.Total()/kWh),
 		Saved:    Number(c.SavedDrawn / kWh), SavedShare: Number(c.SavedShare),
 		MeanHeat: pair(b.Heat.Year.Mean, p.Heat.Year.Mean), Cooler: pair(b.Heat.Year.Cooler, p.Heat.Year.Cooler),
-		SavedHeat: Number(c.SavedHeat), Currency: s.Tariff.Currency,
+		SavedSo: s.savedSo(c), SavedHeat: Number(c.SavedHeat), Currency: s.Tariff.Currency,
 		MoneyDrawn: Number(c.MoneyDrawn), MoneyCredit: Number(c.MoneyCredit), MoneySaved: Number(c.MoneySaved),
 		Cost:        RangeResult{Number(cost.Low), Number(cost.Likely), Number(cost.High)},
 		Payback:     RangeResult{Number(c.Payback.Low), Number(c.Payback.Likely), Number(c.Payback.High)},

@@ -52,13 +52,13 @@ func (d *Document) Advising() (running bool, done, total int, err error) {
 }
 
 // Advise asks for advice on the last solution, in words of a family of units. Events Advising and Advised tell of it; what
-// is there or being made already is not made again.
+// is there or being made already is not made again. While oil temperatures are to follow there is nothing to ask: they are evidence.
 func (d *Document) Advise(system units.System) {
 	d.mu.Lock()
 	defer d.mu.Unlock()
 	a := &d.advice
 	switch {
-	case d.solution == nil || d.closed,
+	case d.solution == nil || d.closed || d.solution.Pending,
 		a.last != nil && a.last.Of == d.solution && a.last.System == system,
 		a.asked != nil && a.asked.of == d.solution && a.asked.system == system:
 		return

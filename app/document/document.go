@@ -54,7 +54,9 @@ type Document struct {
 	stop     context.CancelFunc
 	done     int
 	total    int
+	warming  bool // the oil temperatures of solution are being worked out
 	advice   adviser
+	faults   faults
 
 	session *session // nil when nothing unsaved is kept
 
@@ -82,7 +84,7 @@ var errClosed = errors.New("the document is closed")
 
 // New makes a document with the empty audit, which is not solved. End it with Close
 // or Abandon.
-func New(opt Options) *Document { return newDocument(opt, audit.Solve) }
+func New(opt Options) *Document { return newDocument(opt, audit.SolveEnergy) }
 
 func newDocument(opt Options, solve solver) *Document {
 	if opt.Now == nil {

@@ -13,13 +13,15 @@ const (
 	Opened         EventKind = iota + 1 // another audit is in the document
 	Edited                              // a new revision of the same audit
 	Solving                             // Done of Total; at most twenty a second
-	Solved                              // Solution has the result of Revision
+	Solved                              // Solution has the result of Revision; where it is pending, oil temperatures follow
+	Warmed                              // Solution has them as well, or Err says why not
 	SolveFailed                         // Err says why there is no result
 	SolveCancelled                      // by CancelSolve
 	Saved                               // Revision is on disk
 	Autosaved                           // Revision is kept against a crash
 	AutosaveFailed                      // Err; it is tried again after the next edit
 	Advising                            // Done of Total, of what is to be put right first and measured
+	FaultsFound                         // Faults has those of the present solution
 	Advised                             // Advice has it, or Err says why not
 )
 

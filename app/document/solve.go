@@ -7,7 +7,7 @@ import (
 	"barlitre/audit"
 )
 
-// solver is audit.Solve.
+// solver is audit.SolveEnergy.
 type solver func(ctx context.Context, f *audit.File, opt audit.Options) (*audit.Solution, error)
 
 // progressEvery keeps progress from flooding a window's event queue.
@@ -38,6 +38,13 @@ func (d *Document) Solving() (running bool, done, total int) {
 	return d.wanted != 0, d.done, d.total
 }
 
+// Warming reports whether the oil temperatures of the present solution are being worked out.
+func (d *Document) Warming() bool {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	return d.warming
+}
+
 // Failure returns why the present revision could not be solved, or nil.
 func (d *Document) Failure() error {
 	d.mu.Lock()
@@ -45,12 +52,12 @@ func (d *Document) Failure() error {
 	return d.failure
 }
 
-// CancelSolve gives up solving the present revision; the next edit, or Resolve,
+// CancelSolve gives up solving the present revision, or working out its oil temperatures; the next edit, or Resolve,
 // begins again.
 func (d *Document) CancelSolve() {
 	d.mu.Lock()
-	was, revision := d.wanted != 0, d.now.revision
-	d.wanted = 0
+	was, revision := d.wanted != 0 || d.warming, d.now.revision
+	d.wanted, d.warming = 0, false
 	d.stop()
 	d.mu.Unlock()
 	if was {
@@ -114,7 +121,7 @@ func (d *Document) solveNext() bool {
 		d.mu.Unlock()
 		return false
 	}
-	ticket, now := d.wanted, d.now
+	ticket, now, before := d.wanted, d.now, d.solution
 	ctx, stop := context.WithCancel(context.Background())
 	defer stop()
 	d.stop = stop
@@ -122,11 +129,32 @@ func (d *Document) solveNext() bool {
 
 	var s *audit.Solution
 	err := guarded(func() (err error) {
-		s, err = d.solve(ctx, now.file, audit.Options{Progress: d.progress(ticket, now.revision)})
+		s, err = d.solve(ctx, now.file, audit.Options{Progress: d.progress(ticket, now.revision), Before: before})
 		return err
 	})
-	d.finish(ticket, now.revision, s, err)
+	if d.finish(ticket, now.revision, s, err) {
+		d.warm(ctx, now.revision, s)
+	}
 	return true
+}
+
+// warm works out the oil temperatures of a solution whose energy is on the screens already; the next edit ends it.
+func (d *Document) warm(ctx context.Context, revision int, s *audit.Solution) {
+	var warm *audit.Solution
+	err := guarded(func() (err error) {
+		warm, err = s.Warm(ctx)
+		return err
+	})
+	d.mu.Lock()
+	d.warming = false
+	there := d.solution == s && !d.closed
+	if there && err == nil {
+		d.solution = warm
+	}
+	d.mu.Unlock()
+	if there && ctx.Err() == nil {
+		d.emit(Event{Kind: Warmed, Revision: revision, Err: err})
+	}
 }
 
 // progress returns the receiver of the progress of one solve; audit calls it from
@@ -149,8 +177,8 @@ func (d *Document) progress(ticket, revision int) func(done, total int) {
 
 // finish keeps a result. One that was overtaken by an edit just as it finished is a
 // result of its own revision all the same; one of an audit that is no longer open is
-// not. Solves end in the order of their revisions, as there is one at a time.
-func (d *Document) finish(ticket, revision int, s *audit.Solution, err error) {
+// not. Solves end in the order of their revisions, as there is one at a time. more says that oil temperatures are to follow.
+func (d *Document) finish(ticket, revision int, s *audit.Solution, err error) (more bool) {
 	e := Event{Revision: revision}
 	d.mu.Lock()
 	asked := d.wanted == ticket
@@ -160,6 +188,8 @@ func (d *Document) finish(ticket, revision int, s *audit.Solution, err error) {
 	switch {
 	case err == nil && revision >= d.opened && !d.closed:
 		d.solution, d.solved = s, revision
+		more = s.Pending && d.wanted == 0
+		d.warming = more
 		e.Kind = Solved
 	case err != nil && asked:
 		d.failure = err
@@ -169,4 +199,5 @@ func (d *Document) finish(ticket, revision int, s *audit.Solution, err error) {
 	if e.Kind != 0 {
 		d.emit(e)
 	}
+	return more
 }

@@ -50,9 +50,10 @@ func (d *dumper) write() {
 		return
 	}
 	var b bytes.Buffer
-	_, solved := d.f.doc.Solution()
-	fmt.Fprintf(&b, "frame.title\t%s\t0\t0\t0\t0\nframe.revision\t%d\t0\t0\t0\t0\nframe.solved\t%d\t0\t0\t0\t0\nframe.clock\t%g\t0\t0\t0\t0\n",
-		d.f.win.Title(), d.f.doc.Revision(), solved, d.f.clock)
+	now, solved := d.f.doc.Solution()
+	pending := now != nil && now.Pending
+	fmt.Fprintf(&b, "frame.title\t%s\t0\t0\t0\t0\nframe.revision\t%d\t0\t0\t0\t0\nframe.solved\t%d\t0\t0\t0\t0\nframe.pending\t%t\t0\t0\t0\t0\nframe.clock\t%g\t0\t0\t0\t0\n",
+		d.f.win.Title(), d.f.doc.Revision(), solved, pending, d.f.clock)
 	widgets.Dump(&b, d.f.win.Canvas())
 	if _, err := os.Stat(d.path); err == nil && bytes.Equal(b.Bytes(), d.last) {
 		return // a script that takes the file away waits for the next one

@@ -136,6 +136,9 @@ func (f *Frame) changed(w station.What) {
 		f.menu.update(f)
 		f.title()
 	}
+	if w.Has(station.Advice) {
+		f.rail.refresh()
+	}
 	if w.Has(station.Model | station.Settings | station.Selection) {
 		f.strip.reload()
 	}
@@ -161,12 +164,15 @@ func (f *Frame) told(e document.Event) {
 	case document.Edited:
 		f.keepInRange()
 		f.changed(station.Model)
-	case document.Solved:
+	case document.Solved, document.Warmed:
+		if e.Err != nil {
+			f.Say(e.Err.Error())
+		}
 		f.solution, _ = f.doc.Solution()
 		f.changed(station.Solution)
 	case document.Solving:
 		f.verdict.Refresh()
-	case document.Advising, document.Advised:
+	case document.Advising, document.Advised, document.FaultsFound:
 		f.changed(station.Advice)
 	default:
 		if e.Err != nil {
@@ -313,11 +319,16 @@ func (f *Frame) theme() widgets.Theme {
 	return widgets.Theme{Dark: f.settings.dark, Scale: f.settings.scale}
 }
 
-// Go shows a station by name.
+// Go shows a station by name, or a page of it by "station/page".
 func (f *Frame) Go(name string) {
+	name, page, _ := strings.Cut(name, "/")
 	for i, s := range f.stations {
-		if s.Name() == name {
-			f.show(i)
+		if s.Name() != name {
+			continue
+		}
+		f.show(i)
+		if p, ok := s.(station.Paged); ok && page != "" {
+			p.ShowPage(page)
 		}
 	}
 }

@@ -121,6 +121,12 @@ func (f *Frame) stateText() (text string, good bool) {
 			}
 		}
 	}
+	switch {
+	case f.doc.Warming():
+		return "oil temperature follows", false
+	case f.solution.Pending:
+		return "oil temperature cancelled", false
+	}
 	return "up to date", true
 }
 

@@ -42,6 +42,9 @@ type curves struct {
 	runs  []*audit.CircuitRun // studied
 	plot  figures.Plot
 	quiet bool // sliders are being set, not moved
+
+	loaded  bool   // there were curves
+	waiting string // why there are none now
 }
 
 // trialSlider is a slider with its value beside it.
@@ -81,12 +84,13 @@ func newCurves(ctx station.Context) *curves {
 	return c
 }
 
-// load takes the studies of a solution.
+// load takes the studies of a solution. While they are being worked out nothing of the audit before is drawn in their place.
 func (c *curves) load() {
 	c.runs = nil
 	why := ""
-	if s := c.ctx.Solution(); s != nil {
-		for _, r := range s.Circuits {
+	sol := c.ctx.Solution()
+	if sol != nil {
+		for _, r := range sol.Circuits {
 			switch h := r.Warmth; {
 			case h != nil && h.Week != nil:
 				c.runs = append(c.runs, r)
@@ -95,19 +99,47 @@ func (c *curves) load() {
 			}
 		}
 	}
-	if len(c.runs) == 0 {
-		c.body.Hide()
-		if why == "" {
-			why = "How warm the oil gets stands here once the audit knows the tank: type the oil in the tank under Tank, cooler and air, and then the cooler if there is one."
-		}
-		c.empty.SetText(c.ctx.Local(why))
-		c.empty.Show()
+	pending := sol != nil && sol.Pending
+	switch {
+	case len(c.runs) > 0:
+		c.empty.Hide()
+		c.body.Show()
+		c.reset()
+		c.follow()
 		return
+	case pending && c.body.Visible() && c.loaded:
+		c.wait()
+		return
+	case pending:
+		why = pendingText(c.ctx)
+	case why == "":
+		why = "How warm the oil gets stands here once the audit knows the tank: type the oil in the tank under Tank, cooler and air, at the right, and then the cooler if there is one."
 	}
-	c.empty.Hide()
-	c.body.Show()
-	c.reset()
-	c.follow()
+	c.body.Hide()
+	c.empty.SetText(c.ctx.Local(why))
+	c.empty.Show()
+}
+
+// pendingText says why oil temperatures are not there yet.
+func pendingText(ctx station.Context) string {
+	if ctx.Doc().Warming() {
+		return "The oil temperature is being worked out…"
+	}
+	return "The oil temperature was not worked out, for that was cancelled. The next change begins again."
+}
+
+// wait leaves everything in its place, without a value.
+func (c *curves) wait() {
+	c.plot = figures.Plot{}
+	c.waiting = pendingText(c.ctx)
+	for _, s := range []*trialSlider{c.cooler, c.air, c.tank} {
+		s.value.SetText("")
+		s.slider.Disable()
+	}
+	c.note.SetText(c.waiting)
+	c.take.Disable()
+	c.back.Disable()
+	c.figure.Refresh()
 }
 
 // first is the study that the sliders begin from: all circuits have the tank and cooler of the file, unless it says otherwise.
@@ -115,8 +147,11 @@ func (c *curves) first() *audit.HeatStudy { return c.runs[0].Warmth }
 
 // reset sets the sliders to what the file has.
 func (c *curves) reset() {
-	c.quiet = true
+	c.quiet, c.loaded, c.waiting = true, true, ""
 	defer func() { c.quiet = false }()
+	for _, s := range []*trialSlider{c.cooler, c.air, c.tank} {
+		s.slider.Enable()
+	}
 	top := 0.0
 	for _, r := range c.runs {
 		top = math.Max(top, r.Warmth.Largest())
@@ -248,6 +283,7 @@ func rounded(x float64) float64 {
 
 func (c *curves) draw(to pen.Pen, w, h float64) []widgets.Part {
 	if len(c.plot.Lanes) == 0 {
+		to.Text(pen.Pt{X: w / 2, Y: h / 2}, c.waiting, 12.5, c.ctx.Palette().Secondary, pen.Center, false)
 		return nil
 	}
 	c.plot.Draw(to, w, h, c.ctx.Palette())

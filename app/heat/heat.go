@@ -35,6 +35,9 @@ type Heat struct {
 	warmth  *widgets.FigureTable
 	request *widgets.TipButton
 	missing *widget.Label
+
+	head []string // of warmth, as last worked out
+	rows []widgets.FigureRow
 }
 
 // New makes the station.
@@ -167,12 +170,17 @@ func (h *Heat) temperatures(w station.What) {
 	if w.Has(station.Solution | station.Settings) {
 		h.curves.load()
 	}
-	r := h.ctx.Report()
+	r, s := h.ctx.Report(), h.ctx.Solution()
 	if r == nil || len(r.Warmth) == 0 {
-		h.missing.SetText("Nothing is worked out yet: type the oil in the tank under Tank, cooler and air.")
+		h.request.Disable()
+		if s != nil && s.Pending && len(h.rows) > 0 {
+			h.warmth.Set(h.head, blanked(h.rows))
+			return
+		}
+		h.rows = nil
+		h.missing.SetText(h.ctx.Local(whyNoWarmth(h.ctx, s)))
 		h.missing.Show()
 		h.warmth.Table.Hide()
-		h.request.Disable()
 		return
 	}
 	h.missing.Hide()
@@ -190,7 +198,35 @@ func (h *Heat) temperatures(w station.What) {
 			rows = append(rows, row)
 		}
 	}
-	h.warmth.Set(r.Warmth[0].Head, rows)
+	h.head, h.rows = r.Warmth[0].Head, rows
+	h.warmth.Set(h.head, rows)
+}
+
+// blanked are the rows of a table whose values are being worked out anew.
+func blanked(rows []widgets.FigureRow) []widgets.FigureRow {
+	out := slices.Clone(rows)
+	for i, r := range rows {
+		out[i].Cells = make([]audit.Figure, len(r.Cells))
+		for k := range out[i].Cells {
+			out[i].Cells[k].Text = "…"
+		}
+	}
+	return out
+}
+
+// whyNoWarmth says what belongs here and how to get it.
+func whyNoWarmth(ctx station.Context, s *audit.Solution) string {
+	if s != nil && s.Pending {
+		return pendingText(ctx)
+	}
+	if s != nil {
+		for _, c := range s.Circuits {
+			if c.Warmth != nil && c.Warmth.Fault != "" {
+				return c.Warmth.Fault
+			}
+		}
+	}
+	return "The oil temperature, the cooler needed, the checks of hot day and faults, and the sheet to ask for a cooler stand here once the audit knows the oil in the tank: type it under Tank, cooler and air, at the right."
 }
 
 // emptyText says what belongs here and how to get it.

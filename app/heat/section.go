@@ -234,7 +234,11 @@ func (r *sectionRow) fill(own, holds audit.HeatSection, oil *circuit.Conditions)
 			r.choice.Selected = word
 			r.choice.Refresh()
 		}
-		r.say(r.key.Text, own.Words[r.key.Key] != "", holds.Words[r.key.Key] != "", r.key.Source)
+		source := r.key.Source
+		if b := holds.Drawn.Block; b != "" && r.key.Key == "cooler_place" {
+			source = "as " + b + " is drawn"
+		}
+		r.say(r.key.Text, own.Words[r.key.Key] != "", holds.Words[r.key.Key] != "", source)
 	case r.key.IsText:
 		r.field.SetValue(own.Words[r.key.Key], r.key.Text)
 	default:

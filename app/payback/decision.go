@@ -24,6 +24,7 @@ type decision struct {
 	title     *widget.Label
 	verdict   *widget.Label
 	credit    *widget.Label // what of the saving could be had without the proposal
+	oil       *widget.Label // what the oil temperature found does to the saving
 	warnings  *widget.Label
 	figure    *widgets.Figure
 	bars      figures.Bars
@@ -48,6 +49,7 @@ func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	d.title.Wrapping = fyne.TextWrapWord
 	d.verdict, d.warnings = text(numbered("payback.verdict", i)), text(numbered("payback.warnings", i))
 	d.credit = text(numbered("payback.credit", i))
+	d.oil = text(numbered("payback.oil", i))
 	d.warnings.Importance = widget.DangerImportance
 	d.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(300, 60), d.draw), numbered("payback.bars", i))
 	d.figure.Tapped = d.tapped
@@ -59,7 +61,7 @@ func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	d.cost.In(in)
 	d.none = text(numbered("payback.none", i))
 	d.published = text(numbered("payback.published", i))
-	d.content = container.NewVBox(d.title, d.verdict, d.credit, d.warnings, d.figure, d.table.Table, d.cost.Table, d.none, d.published)
+	d.content = container.NewVBox(d.title, d.verdict, d.credit, d.oil, d.warnings, d.figure, d.table.Table, d.cost.Table, d.none, d.published)
 	return d
 }
 
@@ -76,6 +78,8 @@ func (d *decision) show(r *audit.Decision, c *audit.Comparison) {
 	d.verdict.SetText(d.ctx.Local(r.Verdict))
 	d.credit.SetText(d.ctx.Local(d.creditText(r)))
 	setHidden(d.credit, d.credit.Text == "")
+	d.oil.SetText(d.ctx.Local(r.Oil))
+	setHidden(d.oil, r.Oil == "")
 	d.warnings.SetText("")
 	if len(r.Warnings) > 0 {
 		d.warnings.SetText("▲ " + d.ctx.Local(strings.Join(r.Warnings, "\n▲ ")))

@@ -56,5 +56,14 @@ func (s *pages) show(i int) {
 	s.all[i].changed(station.Everything)
 }
 
+// named shows a page by the name on its button.
+func (s *pages) named(name string) {
+	for i, p := range s.all {
+		if p.name == name {
+			s.show(i)
+		}
+	}
+}
+
 // tell passes a change on to the page in sight.
 func (s *pages) tell(w station.What) { s.all[s.at].changed(w) }

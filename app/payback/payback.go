@@ -81,6 +81,9 @@ func (p *Payback) Help() string {
 // Changed shows anew what changed, on the page in sight.
 func (p *Payback) Changed(w station.What) { p.pages.tell(w) }
 
+// ShowPage brings a page to the front.
+func (p *Payback) ShowPage(name string) { p.pages.named(name) }
+
 // saving shows anew what changed of saving and payback.
 func (p *Payback) saving(w station.What) {
 	if w.Has(station.Model | station.Settings) {

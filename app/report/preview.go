@@ -95,6 +95,12 @@ func (p *preview) turn(by float32) {
 func (p *preview) load() {
 	opt, width := p.options(), widths[p.size]*widgets.Scale()
 	all, _ := p.ctx.Doc().Solution()
+	if all != nil && all.Pending && p.ctx.Doc().Warming() {
+		if len(p.pages.Objects) == 0 {
+			p.say("The report is being laid out.", "It waits for the oil temperatures.")
+		}
+		return
+	}
 	ask := request{all, fmt.Sprint(opt.Without, opt.Sheets), opt.System, width, p.ctx.Palette(), len(opt.SiteCheck) > 0}
 	if ask == p.asked && ask.of != nil {
 		p.state()

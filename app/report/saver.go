@@ -160,7 +160,7 @@ func (s *saver) ask(d *dialog.FileDialog) {
 // solution returns the solution of the audit as it stands; it is worked out where it is not there yet.
 func (s *saver) solution(ctx context.Context, progress func(int, int)) (*audit.Solution, error) {
 	if r, _ := s.ctx.Doc().Solution(); r != nil && s.ctx.Doc().Current() {
-		return r, nil
+		return r.Warm(ctx)
 	}
 	return audit.Solve(ctx, s.ctx.Doc().File(), audit.Options{Progress: progress})
 }

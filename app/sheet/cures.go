@@ -27,14 +27,19 @@ func (f *findings) cureRoom(i int) float64 {
 
 // drawCure draws the button below a finding.
 func (f *findings) drawCure(p pen.Pen, name string, c *cure.Cure, y, w float64) widgets.Part {
+	return f.drawLink(p, name+cureSuffix, c.Name, y, w)
+}
+
+// drawLink draws a button with a name for scripts.
+func (f *findings) drawLink(p pen.Pen, name, label string, y, w float64) widgets.Part {
 	pal := f.s.ctx.Palette()
-	text := pen.Shorten(c.Name, cureText, false, w-findLeft-findRight-16)
+	text := pen.Shorten(label, cureText, false, w-findLeft-findRight-16)
 	width := p.TextWidth(text, cureText, false) + 16
 	fill := pal.Gain
 	fill.A = 24
 	pen.RoundRect(p, findLeft, y+cureGap, width, cureHeight, 4, fill, pen.Stroke{W: 1, C: pal.Gain})
 	p.Text(pen.Pt{X: findLeft + 8, Y: y + cureGap + 14}, text, cureText, pal.Ink, pen.Left, false)
-	return widgets.Part{Name: name + cureSuffix, Text: c.Name, X: findLeft, Y: y + cureGap, W: width, H: cureHeight, Click: true}
+	return widgets.Part{Name: name, Text: label, X: findLeft, Y: y + cureGap, W: width, H: cureHeight, Click: true}
 }
 
 // mend does the cure of a finding. What it drew is selected, and the line below the

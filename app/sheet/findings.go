@@ -27,6 +27,7 @@ type findings struct {
 	s       *Station
 	list    []circuit.Finding
 	cures   []*cure.Cure // of list, nil where there is none
+	faults  []bool       // of list: found by fix first, whose page tells more
 	at      int          // where the keys are
 	focused bool
 	paper   *widgets.Rim
@@ -52,9 +53,12 @@ func newFindings(s *Station) *findings {
 	f.figure = widgets.NewFigure(fyne.NewSize(100, 20), f.draw)
 	f.figure.Tapped = func(p widgets.Part, _, _ float64) {
 		number, isCure := strings.CutSuffix(p.Name, cureSuffix)
+		number, isLink := strings.CutSuffix(number, fixSuffix)
 		i, err := strconv.Atoi(number)
 		switch {
 		case err != nil:
+		case isLink:
+			f.s.ctx.Go(fixPage)
 		case isCure:
 			f.mend(i)
 		default:
@@ -74,11 +78,13 @@ func newFindings(s *Station) *findings {
 func (f *findings) reload() {
 	doc := f.s.ctx.Doc()
 	if solving, _, _ := doc.Solving(); !solving || len(f.list) == 0 {
-		list := doc.Findings()
+		faults := f.toFix()
+		list := append(doc.Findings(), faults...)
 		slices.SortStableFunc(list, func(a, b circuit.Finding) int { return slices.Index(ranks, a.Level) - slices.Index(ranks, b.Level) })
-		f.list, f.cures = list, nil
+		f.list, f.cures, f.faults = list, nil, nil
 		for _, g := range list {
 			f.cures = append(f.cures, doc.Cure(g))
+			f.faults = append(f.faults, slices.Contains(faults, g))
 		}
 	}
 	f.at = min(f.at, max(0, len(f.list)-1))
@@ -149,7 +155,7 @@ func (f *findings) measure() {
 }
 
 func (f *findings) height(i int) float64 {
-	return 16 + findLine*float64(len(f.lines(f.list[i]))) + f.cureRoom(i) + findGap
+	return 16 + findLine*float64(len(f.lines(f.list[i]))) + f.cureRoom(i) + f.fixRoom(i) + findGap
 }
 
 func (f *findings) drawHead(p pen.Pen, w, _ float64) []widgets.Part {
@@ -197,6 +203,9 @@ func (f *findings) draw(p pen.Pen, w, _ float64) []widgets.Part {
 		f.places = append(f.places, widgets.Part{Name: fmt.Sprint(i), Text: f.where(g) + ": " + g.Text, Y: y - 2, W: w, H: h, Click: true})
 		if c := f.cures[i]; c != nil {
 			f.places = append(f.places, f.drawCure(p, fmt.Sprint(i), c, y+14+findLine*float64(len(lines)), w))
+		}
+		if f.faults[i] {
+			f.places = append(f.places, f.drawLink(p, fmt.Sprint(i)+fixSuffix, fixText, y+14+findLine*float64(len(lines))+f.cureRoom(i), w))
 		}
 		y += h
 	}

@@ -61,6 +61,10 @@ func (s *Station) Help() string { return helpText }
 
 // Changed brings in what changed.
 func (s *Station) Changed(w station.What) {
+	if w == station.Advice {
+		s.findings.reload()
+		return
+	}
 	if w.Has(station.Model | station.Selection) {
 		s.bringCircuits(w.Has(station.Model))
 	}
@@ -100,6 +104,9 @@ func (s *Station) Changed(w station.What) {
 // error, and a value that was refused and still stands in its field.
 func (s *Station) Mend() bool {
 	if len(s.panel.drafts) > 0 {
+		return true
+	}
+	if len(s.ctx.Doc().Faults(s.ctx.System())) > 0 {
 		return true
 	}
 	for _, f := range s.ctx.Doc().Findings() {

@@ -3,6 +3,7 @@
 package sitecheck
 
 import (
+	"slices"
 	"strings"
 
 	"fyne.io/fyne/v2"
@@ -20,6 +21,7 @@ type Page struct {
 	content *container.Scroll
 	say     *widget.Label
 	bar     *widget.ProgressBar
+	circuit *widgets.Select // of several as found
 	verdict *widget.Label
 	list    *fyne.Container
 	plan    *sitecheck.Plan
@@ -31,7 +33,9 @@ type Page struct {
 func New(ctx station.Context) *Page {
 	p := &Page{ctx: ctx, say: label("sitecheck.say"), verdict: label("sitecheck.verdict"), bar: widgets.Name(widget.NewProgressBar(), "sitecheck.progress"), list: container.NewVBox()}
 	p.verdict.TextStyle.Bold = true
-	p.content = container.NewScroll(widgets.Spaced(container.NewVBox(p.say, p.bar, p.list)))
+	p.circuit = widgets.Name(widgets.NewSelect(nil, func(string) { p.Changed(station.Advice) }), "sitecheck.circuit")
+	p.circuit.Hide()
+	p.content = container.NewScroll(widgets.Spaced(container.NewVBox(p.say, p.bar, p.circuit, p.list)))
 	return p
 }
 
@@ -66,8 +70,8 @@ func (p *Page) Changed(w station.What) {
 	hide(p.bar, !running)
 	a, _ := doc.Advice()
 	var plan *sitecheck.Plan
-	if a != nil && len(a.Plans) > 0 && p.ctx.Solution() != nil {
-		plan = a.Plans[0]
+	if a != nil && p.ctx.Solution() != nil {
+		plan = p.pick(a.Plans)
 	}
 	text := ""
 	switch {
@@ -86,6 +90,29 @@ func (p *Page) Changed(w station.What) {
 	}
 	p.compare()
 	p.content.Refresh()
+}
+
+// pick returns the plan of the circuit chosen, the first where that is gone, nil where there is none; of several as found the
+// page lets one be chosen.
+func (p *Page) pick(plans []*sitecheck.Plan) *sitecheck.Plan {
+	var names []string
+	var out *sitecheck.Plan
+	for _, x := range plans {
+		names = append(names, x.Circuit)
+		if x.Circuit == p.circuit.Selected {
+			out = x
+		}
+	}
+	if out == nil && len(plans) > 0 {
+		out = plans[0]
+		p.circuit.Selected = out.Circuit
+	}
+	if !slices.Equal(names, p.circuit.Options) {
+		p.circuit.Options = names
+		p.circuit.Refresh()
+	}
+	hide(p.circuit, len(names) < 2)
+	return out
 }
 
 func hide(o fyne.CanvasObject, hidden bool) {

@@ -57,6 +57,12 @@ type Recordings interface {
 // RecordingEndings are how names of loggers' files end.
 var RecordingEndings = []string{".csv", ".tsv", ".txt", ".dat", ".asc", ".log", ".prn"}
 
+// Paged is a station of several pages.
+type Paged interface {
+	// ShowPage brings a page to the front by the name on its button.
+	ShowPage(name string)
+}
+
 // View says how sheets show results: by which signs, and of what time their heat is.
 type View struct {
 	Cycle bool          // discs show a cycle instead of an instant
@@ -104,7 +110,7 @@ type Context interface {
 	PickFile(title, verb string, endings []string, then func(path string))
 	// SaveFirst says why the audit needs a place, lets the user give it one, then goes on.
 	SaveFirst(why string, then func())
-	// Go shows a station by name.
+	// Go shows a station by name, or a page of one that is Paged by "station/page".
 	Go(name string)
 	// Keep takes a dialog that the station has shown: Escape then closes it, and the menu waits.
 	Keep(d dialog.Dialog)

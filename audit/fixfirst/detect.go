@@ -24,12 +24,17 @@ func Detect(s *audit.Solution, run *audit.CircuitRun, system units.System) []*Fi
 	var out []*Finding
 	for _, rule := range rules {
 		for _, f := range rule(p) {
-			if !explained(out, f) {
+			if !explained(out, f) && !heatMade(out, f) {
 				out = append(out, f)
 			}
 		}
 	}
 	return out
+}
+
+// heatMade reports whether faults found before make heat, so that a cooler that is too small is judged once they are cured.
+func heatMade(before []*Finding, f *Finding) bool {
+	return f.Rule == coolerSmall && slices.ContainsFunc(before, func(b *Finding) bool { return !b.Habit })
 }
 
 // explained reports whether an earlier finding is the cause of a later one: where a relief valve stands at the compensator

@@ -92,6 +92,7 @@ const (
 	lower             // the same, where it is not lower already
 	hours             // of a duty
 	rewire            // a signal line to another port
+	heat              // what the section heat says of a circuit
 )
 
 // Edit is one change of the audit file.
@@ -107,6 +108,8 @@ func (e Edit) String() string {
 		return fmt.Sprintf("duty %q: hours %s", e.Target, e.Value)
 	case rewire:
 		return fmt.Sprintf("join %s to %s", e.Target, e.Value)
+	case heat:
+		return e.Target + ": " + e.Value
 	}
 	return fmt.Sprintf("-set %q", e.Target+"="+e.Value)
 }
@@ -122,6 +125,8 @@ func (e Edit) apply(f *audit.File) error {
 			return err
 		}
 		return f.Connect(name, port, e.Value)
+	case heat:
+		return f.Put(e.Target, e.Value)
 	case lower:
 		if isLower(f, e) {
 			return nil

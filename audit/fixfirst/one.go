@@ -24,7 +24,8 @@ func Apply(f *audit.File, edits Cure) (*audit.File, error) {
 	return g, nil
 }
 
-// SolveOne solves one circuit of a file and leaves the others out; the run is nil when it could not be solved.
+// SolveOne solves one circuit of a file and leaves the others out; the run is nil when it could not be solved. Oil temperatures are
+// worked out only where the energy hangs on them.
 func SolveOne(ctx context.Context, f *audit.File, name string) (*audit.Solution, *audit.CircuitRun, error) {
 	one := f.Clone()
 	for i := range one.Circuits {
@@ -33,7 +34,10 @@ func SolveOne(ctx context.Context, f *audit.File, name string) (*audit.Solution,
 			break
 		}
 	}
-	s, err := audit.Solve(ctx, one, audit.Options{})
+	s, err := audit.SolveEnergy(ctx, one, audit.Options{})
+	if err == nil && s.EnergyMayChange() {
+		s, err = s.Warm(ctx)
+	}
 	if ctx.Err() != nil {
 		return nil, nil, ctx.Err()
 	}

@@ -9,20 +9,24 @@ import (
 	"barlitre/machines/units"
 )
 
-// oilTemperature finds oil so warm or so cold that the cooler must be at fault.
+// oilTemperature finds oil so warm or so cold that the cooler must be at fault: by what its temperature comes to where the file
+// says of tank and cooler, else by the temperature in the file alone.
 func oilTemperature(p *plant) []*Finding {
-	theta := p.S.Oil - units.ZeroCelsius
-	top, kind := 66.0, "a stationary machine"
-	if len(p.Blocks("engine")) > 0 {
-		top, kind = 86.0, "a mobile machine"
+	if math.IsNaN(p.S.Oil) || !changes(p) {
+		return nil
 	}
-	if math.IsNaN(theta) || theta >= 33 && theta <= top || !changes(p) {
+	if h := p.Run.Warmth; h != nil && h.Week != nil {
+		return cooled(p, h)
+	}
+	top, kind := p.tooHot()
+	if p.S.Oil >= tooCold && p.S.Oil <= top {
 		return nil
 	}
 	nu := p.S.Conditions.Viscosity / p.S.Conditions.Density
-	f := p.found(nil, "cooler off or too small", Repair, LowCost)
+	f := p.found(nil, coolerSmall, Repair, LowCost)
+	f.Caution, f.Basis = coolerCaution, coolerBasis
 	f.Evidence = []Quantity{
-		{"oil temperature", p.Shown(p.S.Oil, units.Temperature), "40 to 60 °C stationary, up to 80 °C mobile"},
+		{"oil temperature", p.Shown(p.S.Oil, units.Temperature), oilLimits},
 		{"viscosity there", p.Shown(nu, units.KinematicViscosity), "16 to 36 mm²/s"},
 		{"mean heat to the oil", p.Shown(p.Run.Heat.Year.Mean, units.Power), ""},
 	}
@@ -30,19 +34,14 @@ func oilTemperature(p *plant) []*Finding {
 		f.Duty = h.Duty
 		break
 	}
-	if theta > top {
+	if p.S.Oil > top {
 		f.Text = fmt.Sprintf("The oil runs at %s, too warm for %s: the cooler is off, dirty, bypassed or too small.", p.Shown(p.S.Oil, units.Temperature), kind)
-		f.Do = "See that the fan turns the right way and the water runs; clean the fins; read oil and air at inlet and outlet; check thermostat and bypass. Then cure what makes the heat, first in this list."
+		f.Do = coolerDo + " Then cure what makes the heat, first in this list."
 		f.Cures = []Cure{{{set, "oil.temperature", "55 C"}}}
 	} else {
-		f.Rule = "oil overcooled"
-		f.Text = fmt.Sprintf("The oil runs at %s: the cooler takes out more than the machine puts in, and the thick oil costs power.", p.Shown(p.S.Oil, units.Temperature))
-		f.Do = "Let a thermostat switch the fan or the water, or open the bypass, so that the oil comes to 40 to 50 °C."
-		f.Effort, f.Class = NoCost, Settings
+		f = p.overcooled(f, fmt.Sprintf("The oil runs at %s: the cooler takes out more than the machine puts in, and the thick oil costs power.", p.Shown(p.S.Oil, units.Temperature)))
 		f.Cures = []Cure{{{set, "oil.temperature", "45 C"}}}
 	}
-	f.Caution = "Oil and metal above some 55 °C burn; fans start by themselves. Lock off before a guard is opened."
-	f.Basis = "working temperature of oil 40 to 60 °C stationary, up to 80 °C mobile: trade literature"
 	return []*Finding{f}
 }
 

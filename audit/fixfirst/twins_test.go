@@ -32,7 +32,9 @@ var twins = map[string]twin{
 	"transfer, lift too large":     {of: "transfer-station", set: []string{"As found/C1.bore=160 mm", "As found/CB1.setting=40 bar", "As found/P1.displacement=250 cm3/rev", "As found/V1.nominal_flow=250 L/min", "As found/V1.flow_AT=600 L/min", "As found/IC1.nominal_flow=250 L/min", "As found/M1.rated_power=90 kW", "As found/CB1.nominal_flow=300 L/min", "As found/CB1.back_flow=300 L/min", "As found/F1.nominal_flow=700 L/min"}, want: []string{"C1: sized apart from its neighbours"}},
 	"press, pump two sizes up":     {of: "baling-press", set: []string{"As found/P1.displacement=140 cm3/rev", "As found/V1.flow_centre=250 L/min", "As found/M1.rated_power=90 kW", "As found/F1.nominal_flow=500 L/min", "As found/L1.diameter=50 mm"}, want: []string{"P1: pump larger than the duty needs"}},
 	"carrier, line kinked":         {of: "ramp-carrier", set: []string{"As found/L2.diameter=13 mm"}, want: []string{"L2: line too narrow"}},
-	"carrier, oil hot":             {of: "ramp-carrier", set: []string{"oil.temperature=92 C"}, want: []string{"cooler off or too small"}},
+	"carrier, oil hot":             {of: "ramp-carrier", set: []string{"oil.temperature=92 C"}, want: []string{"cooler off or dirty"}},
+	"press, cooler too small":      {of: "baling-press", set: []string{"heat.cooler_rate=0.03 kW/K"}, want: []string{"cooler off or too small"}},
+	"press, no thermostat":         {of: "baling-press", set: []string{"heat.cooler_rate=2 kW/K", "heat.cooler_flow=400 L/min"}, replace: [][2]string{{"  thermostat_opens:", "  # none: "}, {"  fan: by thermostat", "  fan: with the machine"}}, want: []string{"oil overcooled"}},
 
 	"unloader high":       {of: "high-low-pumps", set: []string{"UP1.setting=110 bar"}, want: []string{"UP1: unloading valve set too high"}},
 	"unloader sticks":     {of: "accumulator-unloading", set: []string{"UV1.unloaded_drop=60 bar"}, want: []string{"UV1: unloading at pressure"}},

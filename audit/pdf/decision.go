@@ -115,6 +115,9 @@ func (l *layout) decision(d *audit.Decision, c *audit.Comparison) {
 	l.beforeAfter(d)
 	l.bars(d)
 	l.paybackTable(c, "")
+	if d.Oil != "" {
+		l.lead(side, "Oil temperature.", d.Oil, style{size: 2.6, c: l.pal.Ink})
+	}
 	l.against(d)
 	st := style{size: 2.6, c: l.pal.Ink}
 	if len(l.r.Assumptions) > 0 {

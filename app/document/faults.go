@@ -1,0 +1,63 @@
+package document
+
+import (
+	"slices"
+
+	"barlitre/audit"
+	"barlitre/audit/fixfirst"
+	"barlitre/machines/units"
+)
+
+// faults are what is wrong with the circuits as found, without a price: that needs nothing solved again.
+type faults struct {
+	list   []*fixfirst.Finding
+	of     faultsOf // list
+	sought faultsOf
+}
+
+type faultsOf struct {
+	solution *audit.Solution
+	system   units.System // that the words are written in
+}
+
+// Faults lists what is wrong with the circuits as found, habits left out, in words of a family of units. It is that of the
+// solution before until it is found anew, behind the window; FaultsFound tells of it.
+func (d *Document) Faults(system units.System) []*fixfirst.Finding {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	f := &d.faults
+	now := faultsOf{d.solution, system}
+	switch {
+	case d.solution == nil:
+		f.list, f.of = nil, faultsOf{}
+	case d.closed || d.solution.Pending || f.of == now || f.sought == now:
+	default:
+		f.sought = now
+		d.running.Add(1)
+		go d.findFaults(now)
+	}
+	return f.list
+}
+
+func (d *Document) findFaults(now faultsOf) {
+	defer d.running.Done()
+	var list []*fixfirst.Finding
+	err := guarded(func() error {
+		for _, run := range now.solution.Circuits {
+			if !run.Proposal {
+				list = append(list, fixfirst.Detect(now.solution, run, now.system)...)
+			}
+		}
+		list = slices.DeleteFunc(list, func(f *fixfirst.Finding) bool { return f.Habit })
+		return nil
+	})
+	d.mu.Lock()
+	there := d.faults.sought == now && !d.closed
+	if there {
+		d.faults.list, d.faults.of = list, now
+	}
+	d.mu.Unlock()
+	if there {
+		d.emit(Event{Kind: FaultsFound, Err: err})
+	}
+}
