@@ -99,7 +99,7 @@ func Solve(ctx context.Context, f *File, opt Options) (*Solution, error) {
 		return nil, err
 	}
 	for _, c := range s.Circuits {
-		c.Year = year(c.Duties)
+		c.Year = year(c.Duties, s.File.Calendar)
 		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
 		c.Money = s.Tariff.YearCost(c.Year)
 		c.Services = c.services()
