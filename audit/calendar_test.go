@@ -62,7 +62,7 @@ func TestCalendarGivesHours(t *testing.T) {
 // Each fault of a calendar is told by its line.
 func TestCalendarRefused(t *testing.T) {
 	for _, x := range []struct{ old, new, where, says string }{
-		{"breaks: [30 min]", "breaks: [9 h]", "breaks: [9 h]", "calendar, shift 1: its breaks last 9 h, the shift only 8 h"},
+		{"breaks: [30 min]", "breaks: [9 h]", "breaks: [9 h]", "calendar.shift 1: its breaks last 9 h, the shift only 8 h"},
 		{"from: 14:00", "from: 13:00", "shifts:", "overlaps with the shift early on Mon at 13:00"},
 		{"from: 06:00", "from: six", "six", `"six" is no time of day`},
 		{"Mon-Thu", "Mon-Thx", "Mon-Thx", "are no days"},
@@ -109,14 +109,16 @@ func TestCalendarEdits(t *testing.T) {
 		edit     func(*File) error
 		old, new string
 	}{
-		"weeks":      {func(f *File) error { return f.SetCalendar("weeks", "46") }, "weeks: 48 #", "weeks: 46 #"},
-		"standby":    {func(f *File) error { return f.SetCalendar("standby", "80 W") }, "  idle: {waiting: 100 %}\n", "  idle: {waiting: 100 %}\n  standby: 80 W\n"},
-		"take out":   {func(f *File) error { return f.SetCalendar("idle_time", "") }, "  idle_time: 10 %\n", ""},
-		"stop":       {func(f *File) error { return f.SetStop("rebuild", "40 h") }, "maintenance: 20 h}", "maintenance: 20 h, rebuild: 40 h}"},
-		"no stop":    {func(f *File) error { return f.SetStop("maintenance", "") }, "stops: {maintenance: 20 h}", "stops: {}"},
-		"shift":      {func(f *File) error { return f.SetShift(0, "to", "13:30") }, "{name: early, from: 06:00, to: 14:00, breaks: [30 min]}", "{name: early, from: 06:00, breaks: [30 min], to: 13:30}"},
-		"breaks":     {func(f *File) error { return f.SetShift(0, "breaks", "09:00 - 09:15, 12:00 - 12:30") }, "breaks: [30 min]", "breaks: [09:00 - 09:15, 12:00 - 12:30]"},
-		"new shift":  {func(f *File) error { return f.AddShift("name", "night", "from", "22:00", "to", "06:00", "days", "Mon, Tue") }, "  weeks", "  - {name: night, from: 22:00, to: 06:00, days: \"Mon, Tue\"}\n  weeks"},
+		"weeks":    {func(f *File) error { return f.SetCalendar("weeks", "46") }, "weeks: 48 #", "weeks: 46 #"},
+		"standby":  {func(f *File) error { return f.SetCalendar("standby", "80 W") }, "  idle: {waiting: 100 %}\n", "  idle: {waiting: 100 %}\n  standby: 80 W\n"},
+		"take out": {func(f *File) error { return f.SetCalendar("idle_time", "") }, "  idle_time: 10 %\n", ""},
+		"stop":     {func(f *File) error { return f.SetStop("rebuild", "40 h") }, "maintenance: 20 h}", "maintenance: 20 h, rebuild: 40 h}"},
+		"no stop":  {func(f *File) error { return f.SetStop("maintenance", "") }, "stops: {maintenance: 20 h}", "stops: {}"},
+		"shift":    {func(f *File) error { return f.SetShift(0, "to", "13:30") }, "{name: early, from: 06:00, to: 14:00, breaks: [30 min]}", "{name: early, from: 06:00, breaks: [30 min], to: 13:30}"},
+		"breaks":   {func(f *File) error { return f.SetShift(0, "breaks", "09:00 - 09:15, 12:00 - 12:30") }, "breaks: [30 min]", "breaks: [09:00 - 09:15, 12:00 - 12:30]"},
+		"new shift": {func(f *File) error {
+			return f.AddShift("name", "night", "from", "22:00", "to", "06:00", "days", "Mon, Tue")
+		}, "  weeks", "  - {name: night, from: 22:00, to: 06:00, days: \"Mon, Tue\"}\n  weeks"},
 		"less":       {func(f *File) error { return f.RemoveShift(1) }, "  - {name: late, from: 14:00, to: 22:00, days: Mon-Thu, breaks: [18:00 - 18:15, 20:00 - 20:15]}\n", ""},
 		"share":      {func(f *File) error { return f.AssignDuty("product A", "work", "1500 h") }, "product A: 60 %", "product A: 1500 h"},
 		"state":      {func(f *File) error { return f.AssignDuty("product B", "hold", "") }, "work: {product A: 60 %, product B: 40 %}\n  idle: {waiting: 100 %}", "work: {product A: 60 %}\n  idle: {waiting: 100 %}\n  hold: {product B: 100 %}"},

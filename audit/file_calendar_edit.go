@@ -299,3 +299,20 @@ func (d *draft) cutState(state calendar.State, name string) error {
 	}
 	return d.cut(m, string(state), true, func(k int) bool { return oneLine(mappingKeys(uses)[k].Value) == name })
 }
+
+// CalendarTexts returns what stands written in the calendar, by key; stops as "maintenance 40 h, rebuild 60 h".
+func (f *File) CalendarTexts() map[string]string {
+	out := map[string]string{}
+	m := child(f.root, "calendar")
+	for _, key := range calendarKeys {
+		n := child(m, key)
+		out[key] = written(child(n, "value"), n)
+	}
+	var stops []string
+	for i, k := range mappingKeys(child(m, "stops")) {
+		n := child(m, "stops").Content[2*i+1]
+		stops = append(stops, k.Value+" "+written(child(n, "value"), n))
+	}
+	out["stops"] = strings.Join(stops, ", ")
+	return out
+}

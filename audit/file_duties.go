@@ -48,7 +48,7 @@ func (f *File) RenameDuty(old, name string) error {
 	}
 	d := f.draft()
 	err = d.one(d.src.put(d.duty(i), "name", encode(name, true)))
-	if state := f.stateOf(old); state != "" && err == nil {
+	if state := f.StateOf(old); state != "" && err == nil {
 		uses := child(child(d.root, "calendar"), string(state))
 		key, _ := pair(uses, old)
 		if key == nil {
@@ -97,7 +97,7 @@ func (f *File) RemoveDuty(name string) error {
 	}
 	d := f.draft()
 	err = d.cut(d.root, "duties", true, func(k int) bool { return k == i })
-	if state := f.stateOf(name); state != "" && err == nil {
+	if state := f.StateOf(name); state != "" && err == nil {
 		err = d.cutState(state, name)
 	}
 	return f.dutyEdit(d, i, err,
@@ -131,8 +131,8 @@ func (f *File) SetDuty(name, key, value string) error {
 	})
 }
 
-// stateOf returns the state of the calendar that a duty stands for, "" for none.
-func (f *File) stateOf(name string) calendar.State {
+// StateOf returns the state of the calendar that a duty stands for, "" for none.
+func (f *File) StateOf(name string) calendar.State {
 	if f.Calendar == nil {
 		return ""
 	}

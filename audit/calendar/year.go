@@ -85,7 +85,7 @@ const tolerance = 1.0
 func (p *Plan) Year(own float64) (*Hours, error) {
 	week, at, err := WeekOf(p.Shifts)
 	if err != nil {
-		return nil, fmt.Errorf("shift %s: %w", p.Shifts[at].Name, err)
+		return nil, fmt.Errorf("shift %q: %w", p.Shifts[at].Name, err)
 	}
 	h := &Hours{Own: own, Duty: map[string]float64{}}
 	for _, s := range week {
