@@ -93,6 +93,7 @@ func printCircuit(w io.Writer, c audit.CircuitPage) {
 		table(w, rows)
 	}
 	auditTable(w, c.States)
+	auditTable(w, c.Calendar)
 	auditTable(w, c.Services)
 	auditTable(w, c.Losses)
 	for _, d := range c.Duties {

@@ -23,6 +23,9 @@ func (s *Solution) LossCalculation(circuit, duty int, block, kind string, sys un
 	if block == coolingBlock {
 		return s.coolingCalculation(p, c, duty, kind)
 	}
+	if block == supplyBlock && duty == WholeYear {
+		return s.standbyCalculation(p, c)
+	}
 	law := lawOf(c.Circuit, block, kind)
 	if law == nil {
 		return Calculation{}
@@ -206,11 +209,17 @@ var ofBalance = map[string]func(*Balance) Split{
 }
 
 func (s *Solution) termOfYear(p printer, c *CircuitRun, row EnergyRow) Calculation {
+	if row.Part {
+		return s.stateCalculation(p, c, row)
+	}
 	of := ofBalance[row.Name]
 	if of == nil || c.Year == nil {
 		return Calculation{}
 	}
 	text := c.sum(p, func(b *Balance) float64 { return of(b).Total() })
+	if row.Name == drawnRow {
+		text += s.standby(p, c.Year)
+	}
 	return Calculation{yearFormula, joined([]string{text + " = " + p.kWh(row.Energy.Total()), s.inMoney(p, c, row.Energy.Total())}),
 		"balance of each duty; hours and price from " + fromFile}
 }

@@ -18,6 +18,7 @@ type EnergyRow struct {
 	Name, To    string  // "RV1: relief spill", "oil"
 	Block, Kind string  // of a loss
 	Sum         bool    // what the rows add up to
+	Part        bool    // a part of that sum, by the state of the machine
 	Energy      Split   // J, of one cycle or of the year
 	Share       float64 // of what is drawn; NaN when nothing is drawn
 	Year        float64 // J a year; NaN when the duty has no hours
@@ -34,7 +35,8 @@ func (s *Solution) EnergyRows(circuit, duty int) []EnergyRow {
 		if y == nil || y.Hours <= 0 {
 			return nil
 		}
-		return s.energyRows(c, y.Losses, 1, y.WorkPositive(), y.WorkNegative(), y.Stored, y.Returned, y.Drawn)
+		rows := s.energyRows(c, y.Losses, 1, y.WorkPositive(), y.WorkNegative(), y.Stored, y.Returned, y.Drawn)
+		return append(rows, s.stateRows(c)...)
 	}
 	if duty < 0 || duty >= len(c.Duties) || c.Duties[duty].Balance == nil {
 		return nil
@@ -55,7 +57,7 @@ func (s *Solution) energyRows(c *CircuitRun, losses []LossRow, cycles float64, a
 	whole, price := drawn.Total(), s.unitPrice(c)
 	var out []EnergyRow
 	add := func(name, to string, e Split) *EnergyRow {
-		e = Split{nothing(e.Working, whole), nothing(e.Holding, whole), nothing(e.Idle, whole), nothing(e.Driving, whole)}
+		e = Split{nothing(e.Working, whole), nothing(e.Holding, whole), nothing(e.Idle, whole), nothing(e.Driving, whole), nothing(e.Off, whole)}
 		row := EnergyRow{Name: name, To: to, Energy: e, Share: math.NaN(), Year: e.Total() * cycles, Money: e.Total() * cycles * price}
 		if whole != 0 {
 			row.Share = e.Total() / whole
@@ -74,6 +76,24 @@ func (s *Solution) energyRows(c *CircuitRun, losses []LossRow, cycles float64, a
 	add(drawnRow, "", drawn).Sum = true
 	return out
 }
+
+// stateRows says how much of what is drawn in a year is drawn in each state: those of the calendar, or without one as the
+// ledger tells them apart. They are parts of the sum above them.
+func (s *Solution) stateRows(c *CircuitRun) []EnergyRow {
+	price, whole := s.unitPrice(c), c.Year.Drawn.Total()
+	var out []EnergyRow
+	for _, st := range c.Year.states(s.File.Calendar) {
+		e := nothing(st.Drawn.Total(), whole)
+		out = append(out, EnergyRow{Name: ofWhich + st.Name, Energy: st.Drawn, Share: math.NaN(), Year: e, Money: e * price, Part: true})
+		if whole != 0 {
+			out[len(out)-1].Share = e / whole
+		}
+	}
+	return out
+}
+
+// ofWhich begins the name of a row that is a part of the sum above it.
+const ofWhich = "of which "
 
 // Names of the terms of the balance besides losses, as tables and figures show them.
 const (

@@ -24,7 +24,8 @@ const Format = "barlitre/1"
 // says why. Values are changed by Set, Put, Clear and SetPoint; a sheet is drawn by
 // AddBlock, Connect, Disconnect, Delete, Rename, Copy, Paste, Place, Rotate, Mirror,
 // Bend, AddNote and AddGroup; ImportDuty and SetImport take duties from recordings, TakeIn those that were read; AddCircuit, CopyCircuit and SwapRoles make and exchange
-// sheets; AddAxis, AddDuty, AddTrack, AddRow, SetTable and SetDuty say what the machine does.
+// sheets; AddAxis, AddDuty, AddTrack, AddRow, SetTable and SetDuty say what the machine does;
+// AddCalendar, SetCalendar, AddShift, SetShift, SetStop and AssignDuty when.
 //
 // # Format
 //
@@ -126,6 +127,26 @@ const Format = "barlitre/1"
 //	  groups: [{label: Power unit, blocks: [M1, P1, RV1]}]
 //	  heat: {cooler_rate: 0.1 kW/K}
 //	  bends: [{port: P1.P, runs: [[10, 20, 24, 20], [24, 20, 24, 30]]}]
+//
+// Hours of a year come from a calendar, or stand at the duties; a duty that has its own beside a calendar runs while the
+// machine would be off. Work, idle, hold and off add up to 8760 h:
+//
+//	calendar:
+//	  shifts:                     on the days that they begin; days Mon-Fri when not given
+//	  - {name: early, from: 06:00, to: 14:00, days: Mon-Fri, breaks: [09:00 - 09:15, 12:00 - 12:30]}
+//	  - {name: night, from: 22:00, to: 06:00, days: "Mon-Thu, Sun", breaks: [30 min]}
+//	                              a break without times lies in the middle, several are spread evenly
+//	  weeks: 48                   worked a year; all 52.14 when not given
+//	  stops: {maintenance: 60 h}  planned, a year, out of the time that the shifts work
+//	  in_breaks: idle | hold | off    idle where a duty is given for that, else off
+//	  idle_time: 10 %             of the shifts without breaks and stops, or hours a year; hold_time likewise;
+//	                              what is left is work
+//	  work: {product A: 60 %, product B: 40 %}    duties: a share of the state, or hours a year;
+//	  idle: {waiting: 100 %}                      shares are of what those with hours leave
+//	  hold: {clamped: 100 %}
+//	  standby: 80 W               drawn by the electric supply while the machine is off
+//
+// With a calendar the oil temperature follows its shifts, and those of the section heat are not used.
 //
 // In place of points may stand a list of phases, as a stop watch gives them. The tracks
 // are computed from it (see duty.Build): an axis moves by stroke, or at speed, or stands;
@@ -238,6 +259,7 @@ type File struct {
 	Rates    [][]AxisRate   // by duty; how well a recording tells the energy of its axes
 	Stages   [][]duty.Stage // by duty: the phases that its tracks are computed from; nil where points are given
 	Circuits []CircuitEntry
+	Calendar *Calendar // shifts and states of the year; nil = hours stand at the duties
 	Readings []Reading // of a site check
 
 	data   []byte

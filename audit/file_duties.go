@@ -8,6 +8,7 @@ import (
 
 	"gopkg.in/yaml.v3"
 
+	"barlitre/audit/calendar"
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
 )
@@ -46,7 +47,16 @@ func (f *File) RenameDuty(old, name string) error {
 		return err
 	}
 	d := f.draft()
-	return f.dutyEdit(d, i, d.one(d.src.put(d.duty(i), "name", encode(name, true))), func(g *File) bool { return g.dutyIndex(name) == i })
+	err = d.one(d.src.put(d.duty(i), "name", encode(name, true)))
+	if state := f.StateOf(old); state != "" && err == nil {
+		uses := child(child(d.root, "calendar"), string(state))
+		key, _ := pair(uses, old)
+		if key == nil {
+			return fmt.Errorf("duty %q: %w", old, errLayout)
+		}
+		err = d.one(d.src.replace(key, uses.Column-1, encode(name, true)))
+	}
+	return f.dutyEdit(d, i, err, func(g *File) bool { return g.dutyIndex(name) == i })
 }
 
 // CopyDuty adds a duty that begins as a copy of another, without its hours: two duties
@@ -86,7 +96,11 @@ func (f *File) RemoveDuty(name string) error {
 		return err
 	}
 	d := f.draft()
-	return f.dutyEdit(d, i, d.cut(d.root, "duties", true, func(k int) bool { return k == i }),
+	err = d.cut(d.root, "duties", true, func(k int) bool { return k == i })
+	if state := f.StateOf(name); state != "" && err == nil {
+		err = d.cutState(state, name)
+	}
+	return f.dutyEdit(d, i, err,
 		func(g *File) bool { return len(g.Duties) == len(f.Duties)-1 })
 }
 
@@ -115,6 +129,14 @@ func (f *File) SetDuty(name, key, value string) error {
 	return f.dutyEdit(d, i, err, func(g *File) bool {
 		return written(child(child(g.dutyNode(i), key), "value"), child(g.dutyNode(i), key)) == value
 	})
+}
+
+// StateOf returns the state of the calendar that a duty stands for, "" for none.
+func (f *File) StateOf(name string) calendar.State {
+	if f.Calendar == nil {
+		return ""
+	}
+	return f.Calendar.StateOf(name)
 }
 
 // written returns the text of the first node that is a single value.

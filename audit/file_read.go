@@ -19,7 +19,7 @@ func (r *reader) top(root *yaml.Node) bool {
 		return false
 	}
 	var s scope
-	f := r.fields(s, root, "", "format", "title", "site", "report", "oil", "air", "heat", "energy", "axes", "duties", "circuits", "site_check")
+	f := r.fields(s, root, "", "format", "title", "site", "report", "oil", "air", "heat", "energy", "axes", "duties", "circuits", "calendar", "site_check")
 	r.misspelt = len(r.found) > 0
 	if !r.format(f["format"].value, root) {
 		return false
@@ -35,6 +35,7 @@ func (r *reader) top(root *yaml.Node) bool {
 	r.blockIDs(f["circuits"].value)
 	r.duties(f["duties"].value, root)
 	r.circuits(f["circuits"].value, root)
+	r.calendar(f["calendar"].value)
 	r.readings(f["site_check"].value)
 	return true
 }

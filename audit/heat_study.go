@@ -142,6 +142,9 @@ func (h *HeatStudy) take(s *Solution, t *heatTable) error {
 	}
 	h.Loads = append([]thermal.Load{mix}, t.loads...)
 	h.Plant = h.plant(s.Air)
+	if spans := s.File.Calendar.spans(); len(spans) > 0 {
+		h.Plant.Spans = spans
+	}
 	if err := h.Plant.Prepare(); err != nil {
 		return err
 	}

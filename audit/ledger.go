@@ -18,21 +18,22 @@ const (
 )
 
 // Split is an energy [J], or a time [s], by what the machine does meanwhile.
-// Working, Holding and Idle add up to the total; Driving is that part of the
-// total which was booked while the load drove an axis.
-type Split struct{ Working, Holding, Idle, Driving float64 }
+// Working, Holding, Idle and Off add up to the total; Driving is that part of the
+// total which was booked while the load drove an axis. Only a year with a calendar has
+// something Off.
+type Split struct{ Working, Holding, Idle, Driving, Off float64 }
 
-// Total returns the sum of the three states.
-func (s Split) Total() float64 { return s.Working + s.Holding + s.Idle }
+// Total returns the sum of the states.
+func (s Split) Total() float64 { return s.Working + s.Holding + s.Idle + s.Off }
 
 // Times returns s scaled by k.
 func (s Split) Times(k float64) Split {
-	return Split{k * s.Working, k * s.Holding, k * s.Idle, k * s.Driving}
+	return Split{k * s.Working, k * s.Holding, k * s.Idle, k * s.Driving, k * s.Off}
 }
 
 // Plus returns the sum of two splits.
 func (s Split) Plus(o Split) Split {
-	return Split{s.Working + o.Working, s.Holding + o.Holding, s.Idle + o.Idle, s.Driving + o.Driving}
+	return Split{s.Working + o.Working, s.Holding + o.Holding, s.Idle + o.Idle, s.Driving + o.Driving, s.Off + o.Off}
 }
 
 // Ledger books the energy of one run: a circuit.Receiver. A power is integrated by

@@ -65,6 +65,7 @@ type CircuitPage struct {
 	Heat             []Figure
 	Machines         []MachinePage // those with most loss first
 	States           Table         // time and energy by state of the machine
+	Calendar         Table         // by state of the calendar; empty without one
 	Losses           Table         // over the year
 	Services         Table         // of a cylinder-switched machine; empty without one
 	Parameters       []ParameterRow
@@ -143,7 +144,7 @@ func (s *Solution) circuitPage(p printer, c *CircuitRun) CircuitPage {
 	if page.Solved {
 		page.Year = s.yearFigures(p, c)
 		page.Heat = s.heatFigures(p, c)
-		page.States = stateTable(p, c.Year)
+		page.States, page.Calendar = stateTable(p, c.Year), s.calendarTable(p, c)
 		page.Losses = s.yearLossTable(p, c)
 		page.Services = serviceTable(p, c)
 		page.Machines = s.machinePages(p, c)

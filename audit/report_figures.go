@@ -94,7 +94,7 @@ func (s *Solution) yearFigures(p printer, c *CircuitRun) []Figure {
 	}
 	out := []Figure{
 		{"running hours", y.Hours, p.hours(y.Hours), Calculation{"Σ hours of the duties", p.hours(y.Hours), fromFile}},
-		kWhFigure("drawn a year", y.Drawn.Total(), func(b *Balance) float64 { return b.SupplyIn.Total() }),
+		s.offToo(p, y, kWhFigure("drawn a year", y.Drawn.Total(), func(b *Balance) float64 { return b.SupplyIn.Total() })),
 		kWhFigure("returned a year", y.Returned.Total(), func(b *Balance) float64 { return b.Returned.Total() }),
 		kWhFigure("work against loads a year", y.WorkPositive().Total(), func(b *Balance) float64 { return b.WorkPositive().Total() }),
 		kWhFigure("heat to the oil a year", y.HeatToOil().Total(), func(b *Balance) float64 { return b.HeatToOil().Total() }),

@@ -168,6 +168,9 @@ func (s *Solution) yearLossTable(p printer, c *CircuitRun) Table {
 	row(false, "put into store", "", y.Stored.Total())
 	row(false, "returned to the supply", "mains", y.Returned.Total())
 	row(true, "drawn from the supply", "", y.Drawn.Total())
+	for _, r := range s.stateRows(c) {
+		row(false, r.Name, "", r.Year)
+	}
 	if priced {
 		t.Note = "Money is energy times the price of energy; a loss that is avoided may change others."
 		if y.Fuel.Total() > 0 {
@@ -186,6 +189,9 @@ func stateTable(p printer, y *Year) Table {
 	row(false, "working: an axis moves", y.Seconds.Working, y.Drawn.Working)
 	row(false, "holding: all axes stand, one under a load", y.Seconds.Holding, y.Drawn.Holding)
 	row(false, "idle: all axes stand without load", y.Seconds.Idle, y.Drawn.Idle)
+	if y.Seconds.Off > 0 {
+		row(false, "off", y.Seconds.Off, y.Drawn.Off)
+	}
 	row(true, "all", y.Seconds.Total(), y.Drawn.Total())
 	row(false, "of which while the load drives an axis", y.Seconds.Driving, y.Drawn.Driving)
 	return t

@@ -31,7 +31,7 @@ func (s *Solution) assumptions(p printer) []string {
 }
 
 func (s *Solution) dutyAssumptions(p printer) []string {
-	var out []string
+	out := s.File.calendarLines(p)
 	for i, d := range s.File.Duties {
 		out = append(out, s.recordingLines(p, i)...)
 		for _, a := range s.File.Axes {

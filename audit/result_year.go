@@ -24,6 +24,7 @@ type YearResult struct {
 	HeatToOil    float64      `json:"kWh_heat_to_oil"`
 	Losses       []YearLoss   `json:"losses"`
 	States       StatesResult `json:"states"`
+	Calendar     []YearState  `json:"calendar"` // hours and energy by state of the calendar; they add up to 8760 h and kWh_drawn; empty without one
 
 	MeanHeat Number `json:"mean_heat_to_oil_W"` // over the running hours
 	Cooler   Number `json:"cooler_W_per_K"`     // for that, between entering oil and entering air
@@ -44,6 +45,8 @@ type YearResult struct {
 // YearDutyResult is one duty of the year.
 type YearDutyResult struct {
 	Name        string      `json:"name"`
+	Hours       float64     `json:"hours"`
+	State       string      `json:"state"` // of the calendar: work, idle, hold; "" for hours of its own
 	Cycles      float64     `json:"cycles"`
 	Repeats     bool        `json:"repeats"`
 	Drawn       float64     `json:"kWh_drawn"`
@@ -70,12 +73,20 @@ type StateResult struct {
 	MeanDrawn float64 `json:"mean_drawn_W"`
 }
 
-// StatesResult splits the year: working, holding and idle add up to it;
-// load_drives is part of working.
+// YearState is one state of the calendar over a year.
+type YearState struct {
+	State  string   `json:"state"` // work, idle, hold, off, or "own hours"
+	Duties []string `json:"duties"`
+	StateResult
+}
+
+// StatesResult splits the year by what the axes do: working, holding, idle and off add up to it;
+// load_drives is part of working. Off is 0 without a calendar.
 type StatesResult struct {
 	Working StateResult `json:"working"`
 	Holding StateResult `json:"holding"`
 	Idle    StateResult `json:"idle"`
+	Off     StateResult `json:"off"`
 	Driving StateResult `json:"load_drives"`
 }
 
@@ -92,7 +103,7 @@ func (s *Solution) yearResult(c *CircuitRun) YearResult {
 		Stored: y.Stored.Total() / kWh, HeatToOil: y.HeatToOil().Total() / kWh,
 		States: StatesResult{
 			state(y.Seconds.Working, y.Drawn.Working), state(y.Seconds.Holding, y.Drawn.Holding),
-			state(y.Seconds.Idle, y.Drawn.Idle), state(y.Seconds.Driving, y.Drawn.Driving)},
+			state(y.Seconds.Idle, y.Drawn.Idle), state(y.Seconds.Off, y.Drawn.Off), state(y.Seconds.Driving, y.Drawn.Driving)},
 		MeanHeat: Number(c.Heat.Year.Mean), Cooler: Number(c.Heat.Year.Cooler), Oil: Number(s.Oil), Air: Number(s.Air),
 		EnergyCost: Number(c.Money.Drawn), Credit: Number(c.Money.Credit), CreditReturned: t.CreditReturned,
 		PricePerKWh: Number(t.Price * kWh), Currency: t.Currency,
@@ -100,6 +111,12 @@ func (s *Solution) yearResult(c *CircuitRun) YearResult {
 	}
 	if !math.IsNaN(t.CO2) {
 		r.CO2Year, r.CO2Basis = t.CO2Year, t.CO2Basis
+	}
+	r.Calendar = []YearState{}
+	if s.File.Calendar != nil && s.File.Calendar.Hours != nil {
+		for _, x := range y.states(s.File.Calendar) {
+			r.Calendar = append(r.Calendar, YearState{x.Key, append([]string{}, x.Duties...), state(x.Seconds, x.Drawn.Total())})
+		}
 	}
 	for _, d := range y.Duties {
 		r.Duties = append(r.Duties, c.yearDutyResult(d))
@@ -115,7 +132,8 @@ func state(seconds, drawn float64) StateResult {
 }
 
 func (c *CircuitRun) yearDutyResult(d YearDuty) YearDutyResult {
-	r := YearDutyResult{Name: d.Duty, Cycles: d.Cycles, Repeats: d.Repeats, Drawn: d.Drawn / kWh, MeanSupply: ratio(d.Drawn, d.Hours)}
+	r := YearDutyResult{Name: d.Duty, Cycles: d.Cycles, Repeats: d.Repeats, Hours: d.Hours / units.Hour, State: string(d.State),
+		Drawn: d.Drawn / kWh, MeanSupply: ratio(d.Drawn, d.Hours)}
 	for _, run := range c.Duties {
 		if run.Duty.Name == d.Duty && run.Balance != nil {
 			r.Demand, r.DemandBasis = run.Balance.Demand.Mean, run.Balance.Demand.Basis

@@ -1,14 +1,19 @@
 package audit
 
-import "barlitre/circuit"
+import (
+	"barlitre/audit/calendar"
+	"barlitre/circuit"
+)
 
 // YearDuty is what one duty adds to the year.
 type YearDuty struct {
 	Duty    string
-	Hours   float64 // s a year in which it runs
-	Cycles  float64 // a year
-	Repeats bool    // false: a single recording, taken for the mean of its hours
-	Drawn   float64 // J a year
+	State   calendar.State // that it stands for; "" for hours of its own
+	Hours   float64        // s a year in which it runs
+	Cycles  float64        // a year
+	Repeats bool           // false: a single recording, taken for the mean of its hours
+	Drawn   float64        // J a year
+	By      Split          // Drawn by what the axes do
 }
 
 // Year is the energy balance of a circuit over a year: each duty's balance times
@@ -16,7 +21,8 @@ type YearDuty struct {
 //
 //	cycles = hours / length of the cycle
 //
-// For a duty that does not repeat this is its mean power times its hours.
+// For a duty that does not repeat this is its mean power times its hours. With a calendar the
+// hours off are there too, with what the electric supply draws in them.
 type Year struct {
 	Duties   []YearDuty
 	Complete bool     // every duty with hours was solved
@@ -33,7 +39,7 @@ type Year struct {
 }
 
 // year adds up the duties of a circuit. A duty without a balance is named in Missing.
-func year(runs []*DutyRun) *Year {
+func year(runs []*DutyRun, cal *Calendar) *Year {
 	y := &Year{Complete: true}
 	for _, r := range runs {
 		if r.Duty.Hours <= 0 {
@@ -44,16 +50,42 @@ func year(runs []*DutyRun) *Year {
 			y.Missing = append(y.Missing, r.Duty.Name)
 			continue
 		}
-		y.add(r)
+		y.add(r, cal)
+	}
+	if cal != nil && cal.Hours != nil && len(y.Duties) > 0 {
+		y.off(cal, runs)
 	}
 	return y
 }
 
-func (y *Year) add(r *DutyRun) {
+// Names of what the electric supply draws while the machine is off.
+const (
+	supplyBlock = "Electric supply"
+	standbyKind = "standby while off"
+)
+
+// off adds the hours in which the machine is off. A machine that does not draw from the mains draws nothing in them.
+func (y *Year) off(cal *Calendar, runs []*DutyRun) {
+	y.Seconds.Off = cal.Hours.Off
+	for _, r := range runs {
+		if r.Balance != nil && r.Balance.offMains() {
+			return
+		}
+	}
+	if e := (Split{Off: cal.Standby * cal.Hours.Off}); e.Off > 0 {
+		y.Drawn = y.Drawn.Plus(e)
+		y.Losses = append(y.Losses, LossRow{Block: supplyBlock, Kind: standbyKind, Sink: circuit.ToAir, Energy: e})
+	}
+}
+
+func (y *Year) add(r *DutyRun, cal *Calendar) {
 	b := r.Balance
 	n := r.Duty.Hours / b.Cycle
-	y.Duties = append(y.Duties, YearDuty{Duty: r.Duty.Name, Hours: r.Duty.Hours, Cycles: n,
-		Repeats: r.Duty.Repeats, Drawn: n * b.SupplyIn.Total()})
+	d := YearDuty{Duty: r.Duty.Name, Hours: r.Duty.Hours, Cycles: n, Repeats: r.Duty.Repeats, Drawn: n * b.SupplyIn.Total(), By: b.SupplyIn.Times(n)}
+	if cal != nil {
+		d.State = cal.StateOf(r.Duty.Name)
+	}
+	y.Duties = append(y.Duties, d)
 	y.Hours += r.Duty.Hours
 	y.Seconds = y.Seconds.Plus(b.Seconds.Times(n))
 	y.Drawn = y.Drawn.Plus(b.SupplyIn.Times(n))
@@ -120,7 +152,7 @@ func (y *Year) LossTo(s circuit.Sink) Split {
 
 // MeanPower returns the mean power [W] of an energy booked over a year during the
 // running hours; 0 when there are none.
-func (y *Year) MeanPower(e Split) float64 { return ratio(e.Total(), y.Hours) }
+func (y *Year) MeanPower(e Split) float64 { return ratio(e.Total()-e.Off, y.Hours) }
 
 // ratio is a/b, or 0 when b is 0: for shares and means of something that did not happen.
 func ratio(a, b float64) float64 {

@@ -93,6 +93,11 @@ func (d *Document) StagesToPoints(duty string) error {
 	return d.Edit("Turn phases of "+duty+" into points", func(f *audit.File) error { return f.StagesToPoints(duty) })
 }
 
+// EditYear changes the calendar, as the edits of audit.File do; what names the step of undo.
+func (d *Document) EditYear(what string, edit func(*audit.File) error) error {
+	return d.Edit("Change "+what+" of the year", edit)
+}
+
 // CloseStrokes scales the way back of an axis until it ends where it began.
 func (d *Document) CloseStrokes(duty, axis string) error {
 	return d.Edit("Close strokes of "+axis, func(f *audit.File) error { return f.CloseStrokes(duty, axis) })

@@ -36,6 +36,9 @@ type Station struct {
 	panel   *panel
 	pages   *pages
 	phases  *phases
+	year    *year
+	upper   fyne.CanvasObject // the plot
+	both    *container.Split  // plot and pages
 	ground  *canvas.Rectangle
 	loading bool
 
@@ -105,9 +108,9 @@ func (s *Station) lay() fyne.CanvasObject {
 	pick := container.New(widgets.Wide(220), s.picker)
 	head := container.NewBorder(nil, nil, pick, nil, s.facts)
 	plot := container.NewStack(s.ground, container.NewVScroll(widgets.Spaced(s.plot)))
-	both := container.NewVSplit(plot, s.pages.content)
-	both.Offset = 0.5
-	return container.NewBorder(head, nil, nil, nil, both)
+	s.upper, s.both = plot, container.NewVSplit(plot, s.pages.content)
+	s.both.Offset = 0.5
+	return container.NewBorder(head, nil, nil, nil, s.both)
 }
 
 // Changed shows what changed.
@@ -195,7 +198,9 @@ func (s *Station) fillPicker() {
 // factsOf is what the file says of a duty besides its points.
 func (s *Station) factsOf(d *cycle.Duty) string {
 	var parts []string
-	if d.Hours > 0 {
+	if state := s.ctx.Doc().File().StateOf(d.Name); state != "" {
+		parts = append(parts, s.ctx.Local(units.Number(d.Hours/units.Hour, 4))+"\u202fh a year of "+string(state)+", from the calendar")
+	} else if d.Hours > 0 {
 		parts = append(parts, s.ctx.Local(units.Number(d.Hours/units.Hour, 4))+"\u202fh a year")
 	} else {
 		parts = append(parts, "no hours a year: left out of the year")

@@ -15,6 +15,7 @@ type pages struct {
 	content fyne.CanvasObject
 	list    []*page
 	at      int
+	year    int             // the page that is of all duties, without the plot of one
 	points  *fyne.Container // buttons of the table
 }
 
@@ -34,6 +35,9 @@ func newPages(s *Station) *pages {
 	p.add("Points", "duty.page.points", container.NewBorder(nil, s.refusal, nil, nil, s.table), p.points, nil)
 	s.phases = newPhases(s)
 	p.add("Phases", "duty.page.phases", s.phases.body, s.phases.beside, s.phases.fill)
+	s.year = newYear(s)
+	p.add("Year", "duty.page.year", s.year.body, s.year.beside, s.year.fill)
+	p.year = len(p.list) - 1
 	bar, bodies, beside := container.NewHBox(), container.NewStack(), container.NewStack()
 	for _, g := range p.list {
 		bar.Add(g.button)
@@ -55,6 +59,10 @@ func (p *pages) add(word, name string, body, beside fyne.CanvasObject, fill func
 // open shows a page.
 func (p *pages) open(i int) {
 	p.at = i
+	if p.s.upper != nil {
+		show(p.s.upper, i != p.year)
+		p.s.both.Refresh()
+	}
 	for k, g := range p.list {
 		show(g.body, k == i)
 		show(g.beside, k == i)

@@ -90,6 +90,9 @@ func (p *panel) fill() {
 	if d.Hours > 0 {
 		hours, hint = p.s.ctx.Local(station.TrimZeros(units.Number(d.Hours/units.Hour, 6))+"\u202fh"), ""
 	}
+	if state := p.s.ctx.Doc().File().StateOf(d.Name); state != "" {
+		hint = "from the calendar, as " + string(state) + ": see Year"
+	}
 	p.hours.SetValue(hours, hint)
 	step, hint := p.s.ctx.Local(units.FileText(d.Step, millisecond)), ""
 	if d.Step == 0 {

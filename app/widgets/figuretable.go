@@ -55,8 +55,7 @@ func (t *FigureTable) Set(head []string, rows []FigureRow) {
 		columns[i] = Column{Name: strconv.Itoa(i), Head: h, Left: i == 0}
 	}
 	t.Table.SetData(columns, len(rows), t.row)
-	t.Table.min.Height = float32(t.Table.headHeight() + tableRow*float64(len(rows)) + tableBar + 1)
-	t.Table.Refresh()
+	t.Table.FitRows()
 }
 
 func (t *FigureTable) row(i int) TableRow {

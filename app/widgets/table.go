@@ -124,6 +124,12 @@ func (t *Table) SetData(columns []Column, rows int, row func(int) TableRow) {
 	t.Refresh()
 }
 
+// FitRows makes the table as high as all its rows.
+func (t *Table) FitRows() {
+	t.min.Height = float32(t.headHeight() + tableRow*float64(t.rows) + tableBar + 1)
+	t.Refresh()
+}
+
 // Forget drops what was refused, such as when another thing is shown.
 func (t *Table) Forget() {
 	t.refused = map[cellAt]refusal{}

@@ -37,6 +37,9 @@ func (l *layout) energy() {
 		if l.s.Circuits[i].Year.Hours > 0 {
 			l.table(fromReport(c.Losses))
 			l.table(fromReport(c.States))
+			if t := fromReport(c.Calendar); len(t.rows) > 0 {
+				l.table(t)
+			}
 		}
 		l.services(i)
 		for _, d := range c.Duties {
