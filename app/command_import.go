@@ -6,6 +6,7 @@ import (
 	"flag"
 	"fmt"
 	"io"
+	"maps"
 	"math"
 	"os"
 	"os/signal"
@@ -26,6 +27,7 @@ type importCall struct {
 	rows    int
 	yaml    bool
 	answers [][2]string
+	told    string // file of what is known of the recording
 	choices map[string]string
 	rate    []string // two channels
 	cycles  []string // channels that move, then those that are held
@@ -43,6 +45,7 @@ func parseImport(args []string, errs io.Writer) (importCall, error) {
 		c.answers = append(c.answers, [2]string{field, choice})
 		return unless(ok, "write FIELD=CHOICE")
 	})
+	f.StringVar(&c.told, "told", "", "lay over the guess what `FILE` says of the recording (YAML with answers, recipe, channels)")
 	f.Func("choose", "answer a correction otherwise, as in `\"p1: zero offset=leave\"`", func(s string) error {
 		key, choice, ok := strings.Cut(s, "=")
 		c.choices[key] = choice
@@ -96,21 +99,31 @@ func (c importCall) run(out, errs io.Writer) error {
 		return err
 	}
 	r := file.Guess()
+	if c.told != "" {
+		text, err := os.ReadFile(c.told)
+		if err != nil {
+			return err
+		}
+		if err := r.Tell(text); err != nil {
+			return fmt.Errorf("%s: %w", c.told, err)
+		}
+	}
 	for _, a := range c.answers {
 		if err := r.Answer(a[0], a[1]); err != nil {
 			return err
 		}
 	}
-	if len(c.choices) > 0 {
+	if r.Choices == nil {
 		r.Choices = c.choices
 	}
+	maps.Copy(r.Choices, c.choices)
 	printRecipe(out, file, r)
 	if p, err := file.Preview(r, c.rows); err == nil {
 		printPreview(out, r, p)
 	}
-	for _, q := range r.Questions {
+	for _, q := range r.Open() {
 		heading(out, "Question")
-		wrap(out, fmt.Sprintf("%s: %s (-answer %s=…)", q.Field, q.Text, q.Field))
+		wrap(out, fmt.Sprintf("%s: %s (-answer \"%s=…\")", q.Field, q.Text, q.Field))
 	}
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
 	defer stop()

@@ -27,7 +27,7 @@ var arrows = map[string]arrow{
 	"circuit/balance":            {outside: []string{"gonum.org/v1/gonum"}},
 	"circuit/duty":               {ours: []string{"machines/units"}},
 	"circuit/recording":          {ours: []string{"machines/units"}},
-	"circuit/recording/logger":   {ours: []string{"machines/units"}, outside: []string{"golang.org/x/text"}},
+	"circuit/recording/logger":   {ours: []string{"machines/units"}, outside: []string{"golang.org/x/text", "gopkg.in/yaml.v3"}},
 	"circuit/recording/channels": {},
 	"circuit/recording/rate":     {},
 	"circuit/recording/cycles":   {outside: []string{"gonum.org/v1/gonum"}},

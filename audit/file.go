@@ -160,7 +160,8 @@ const Format = "barlitre/1"
 //	  first: 6                    first line of numbers
 //	  time: {columns: [Date, Time], form: dated, order: dmy}
 //	                              form: elapsed or epoch (with unit), clock, dated, serial, or
-//	                              spaced (with interval_s); counter: the column that counts records
+//	                              spaced (with interval_s); counter: the column that counts records;
+//	                              pauses_s: [42, 7.5] where the clock begins anew
 //	  channels:
 //	  - {column: p1, quantity: pressure, unit: bar}
 //	  - {column: p2, quantity: pressure, unit: bar, absolute: yes,
@@ -168,6 +169,7 @@ const Format = "barlitre/1"
 //	  - {column: E1, quantity: energy, unit: kWh, counter: yes}
 //	  - {column: note, text: yes}
 //	  choices: {"p1: zero offset": leave, out of order: drop}
+//	  air_pa: 101300              of the air that absolute pressures stand above; else the standard atmosphere
 //	columns: {X1.pressure: p1}
 //	derived:
 //	  ram.speed: {law: speed of position, position: x1, window: 0.2 s}

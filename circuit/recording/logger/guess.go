@@ -72,10 +72,11 @@ type guesser struct {
 
 // shape is what a line is, cut in one way.
 type shape struct {
-	cells, good, solid int // good: a number, a stamp or nothing; solid: not nothing
+	all, cells, good, solid int // cells: up to the last with something in it; good: a number, a stamp or nothing; solid: not nothing
 }
 
 func shapeOf(cells [][]byte) (s shape) {
+	s.all = len(cells)
 	for len(cells) > 0 && len(cells[len(cells)-1]) == 0 {
 		cells = cells[:len(cells)-1] // a separator at the end
 	}
@@ -142,21 +143,23 @@ func (g *guesser) separators() bool {
 }
 
 func (g *guesser) score(s splitter) (score float64, width int) {
-	count := map[int]int{}
+	count, filled := map[int]int{}, map[int]int{} // by how many separators a row has: rows, and cells in the fullest of them
 	shapes := make([]shape, len(g.lines))
 	for i, line := range g.lines {
 		if shapes[i] = shapeOf(s.split(line, nil)); shapes[i].row() {
-			count[shapes[i].cells]++
+			count[shapes[i].all]++
+			filled[shapes[i].all] = max(filled[shapes[i].all], shapes[i].cells)
 		}
 	}
-	rows := 0
+	rows, all := 0, 0
 	for n, k := range count {
-		if k > rows || k == rows && n > width {
-			rows, width = k, n
+		if k > rows || k == rows && n > all {
+			rows, all = k, n
 		}
 	}
+	width = filled[all]
 	for _, sh := range shapes {
-		if sh.row() && sh.cells >= width/2 && sh.cells <= width {
+		if sh.row() && sh.all >= width/2 && sh.cells <= width {
 			share := float64(sh.good) / float64(sh.cells)
 			score += share * share
 		}
@@ -168,13 +171,15 @@ func (g *guesser) score(s splitter) (score float64, width int) {
 // where rows of words have unequal numbers of them or the head has more words than columns.
 func (g *guesser) fixed() {
 	s := splitter{}
-	var rows [][]byte
+	var rows, whole [][]byte // whole: nothing but numbers
 	counts := map[int]int{}
 	head := 0
 	for _, line := range g.lines {
 		cells := s.split(line, nil)
-		if shapeOf(cells).row() {
-			rows = append(rows, line)
+		if sh := shapeOf(cells); sh.row() {
+			if rows = append(rows, line); sh.good == sh.cells {
+				whole = append(whole, line)
+			}
 			counts[len(cells)]++
 		} else if len(rows) == 0 && len(cells) > 0 {
 			head = len(cells)
@@ -182,6 +187,9 @@ func (g *guesser) fixed() {
 	}
 	if len(counts) == 1 && (head == 0 || counts[head] > 0) {
 		return
+	}
+	if 2*len(whole) > len(rows) { // a line above them may look like a row
+		rows = whole
 	}
 	widths := blankColumns(rows)
 	if len(widths) < 2 {
@@ -232,7 +240,7 @@ func (g *guesser) heads() {
 	for i, line := range g.lines {
 		cells := g.split.split(line, nil)
 		sh := shapeOf(cells)
-		if !sh.row() || sh.cells*2 < n || sh.good*2 < n && sh.cells == n || g.unitLike(cells) {
+		if !sh.row() || sh.all*2 < n || sh.good*2 < n && sh.cells == n || g.unitLike(cells) {
 			continue
 		}
 		next, of := 0, 0
@@ -241,7 +249,7 @@ func (g *guesser) heads() {
 				continue
 			}
 			of++
-			if s := shapeOf(g.split.split(g.lines[k], nil)); s.row() && s.cells*2 >= n {
+			if s := shapeOf(g.split.split(g.lines[k], nil)); s.row() && s.all*2 >= n {
 				next++
 			}
 		}

@@ -9,6 +9,8 @@ import (
 	"hash"
 	"io"
 	"sort"
+
+	"barlitre/machines/units"
 )
 
 // Recording is what an import makes of a file.
@@ -59,6 +61,8 @@ type importer struct {
 	by                      []*Series // by column
 	raw                     column    // time stamps, s
 	count                   column
+	last                    float64 // s, of the last row, and where a counter began
+	count0                  float64
 	ns0                     int64
 	x0                      float64
 	begun                   bool
@@ -84,8 +88,8 @@ type rowMark struct {
 // Import reads the whole file. progress, which may be nil, is told how many bytes of the
 // file are done, a few times a second at most speed. A cancelled context ends it.
 func (f *File) Import(ctx context.Context, r Recipe, progress func(done, total int64)) (*Recording, error) {
-	if len(r.Questions) > 0 {
-		return nil, fmt.Errorf("%s: %s", f.Name, r.Questions[0].Text)
+	if q := r.Open(); len(q) > 0 {
+		return nil, fmt.Errorf("%s: %s", f.Name, q[0].Text)
 	}
 	if err := r.check(); err != nil {
 		return nil, fmt.Errorf("%s: %w", f.Name, err)
@@ -168,6 +172,14 @@ func (r *Recipe) check() error {
 	}
 	if r.Separator == "fixed" && !sort.IntsAreSorted(r.Widths) || r.Separator == "fixed" && (len(r.Widths) < 2 || r.Widths[0] < 0) {
 		return fmt.Errorf("a file of fixed width needs widths, rising, where its columns begin")
+	}
+	if !(r.Air == 0 || r.Air > 0.3*units.Bar && r.Air < 1.2*units.Bar) {
+		return fmt.Errorf("the pressure of the air is %g Pa, must lie between 30000 and 120000", r.Air)
+	}
+	for _, p := range r.Time.Pauses {
+		if !(p > 0 && p < 1e9) {
+			return fmt.Errorf("a pause is %g s, must be above 0", p)
+		}
 	}
 	switch t := r.Time; {
 	case t.Form == Spaced && !(t.Interval > 0 && t.Interval < 1e9):

@@ -23,8 +23,8 @@ func (im *importer) row() bool {
 		if !im.numeric() {
 			return false
 		}
-		x = float64(im.rows) * im.Recipe.Time.Interval
-		decimals = -1
+		x, decimals = im.counted(), -1
+		im.last = x
 	} else {
 		a, b := im.cell(im.timeA), im.cell(im.timeB)
 		if len(a) == 0 && len(b) == 0 {
@@ -58,6 +58,25 @@ func (im *importer) row() bool {
 	im.lengths()
 	im.rows++
 	return true
+}
+
+// counted is the time of a row without a stamp: by the counter of records where there is one,
+// for then a lost row leaves its gap, else by the rows so far.
+func (im *importer) counted() float64 {
+	h := im.Recipe.Time.Interval
+	if im.counterAt < 0 {
+		return float64(im.rows) * h
+	}
+	switch c, _, _, ok := im.n.parse(im.cell(im.counterAt)); {
+	case !im.begun:
+		if im.count0 = c; !ok {
+			im.count0 = 1
+		}
+		return 0
+	case ok && math.Abs((c-im.count0)*h) < longest:
+		return (c - im.count0) * h
+	}
+	return im.last + h
 }
 
 // since turns a stamp into seconds: as they stand where they are elapsed, from the first row on otherwise.

@@ -115,8 +115,14 @@ func (q *inspector) pressure() {
 			c.Text, c.Warns = fmt.Sprintf("rests at %s, as a pressure against vacuum does; say which it is", q.shown(rest)), gauge == "leave"
 		}
 		if gauge == "gauge" {
-			s.shift -= units.AtmosphericPressure
+			air := q.Recipe.Air
 			c.Done = "the standard atmosphere of 1.01325 bar is taken off"
+			if air == 0 {
+				air = units.AtmosphericPressure
+			} else {
+				c.Done = fmt.Sprintf("the pressure of the air, stated as %.6g bar, is taken off", air/units.Bar)
+			}
+			s.shift -= air
 		}
 		q.say(c)
 	case rest < -restBar && rest > -3*units.Bar && width < math.Max(0.3*-rest, restBar) && top-rest > 5*units.Bar:
@@ -167,26 +173,53 @@ func (q *inspector) clipped() {
 			run = 0
 		}
 		pairs := float64(len(q.v) - 1)
-		held := float64(rows - runs) // equal pairs that are those of the stretches themselves
-		if rows == 0 || end.sign*limit == 0 || q.equal*pairs-held > noisyBelow*(pairs-held) {
+		held := float64(rows - runs)                // equal pairs that are those of the stretches themselves
+		long := runs == 1 && rows >= q.stuckLeast() // told by stuck
+		if long || rows == 0 || end.sign*limit == 0 || q.equal*pairs-held > noisyBelow*(pairs-held) {
 			continue
 		}
-		q.say(q.where(Correction{Key: "clipped " + end.name, Count: rows, Warns: true,
-			Text: fmt.Sprintf("%s (%.2g %% of %d) in %s at its %s value %s: the peaks are cut off there", isRows(rows), 100*float64(rows)/float64(len(q.v)), len(q.v), counted(runs, "place"), end.name, q.shown(end.sign*limit))}, first))
+		stroke := q.s.Dim == units.Length || q.s.Dim == units.Angle
+		why := "the peaks are cut off there"
+		if stroke {
+			why = "an end of the stroke, or of what the sensor can tell"
+		}
+		q.say(q.where(Correction{Key: "clipped " + end.name, Count: rows, Warns: !stroke,
+			Text: fmt.Sprintf("%s (%.2g %% of %d) in %s at its %s value %s: %s", isRows(rows), 100*float64(rows)/float64(len(q.v)), len(q.v), counted(runs, "place"), end.name, q.shown(end.sign*limit), why)}, first))
 	}
+}
+
+func (q *inspector) stuckLeast() int {
+	return max(stuckRows, int(stuckShare*float64(len(q.v))))
+}
+
+// again tells of both ends of a channel whether it comes to a stand there more than once, as where peaks are cut off.
+func (q *inspector) again() map[float64]bool {
+	low, high := math.Inf(1), math.Inf(-1)
+	for _, x := range q.v {
+		if x == x {
+			low, high = math.Min(low, x), math.Max(high, x)
+		}
+	}
+	stands := map[float64]int{}
+	for i, x := range q.v {
+		if (x == low || x == high) && i >= clippedRows-1 && q.v[i-1] == x && q.v[i-2] == x && (i == clippedRows-1 || q.v[i-clippedRows] != x) {
+			stands[x]++
+		}
+	}
+	return map[float64]bool{low: stands[low] > 1, high: stands[high] > 1}
 }
 
 // stuck looks for long stretches of one value, of a channel that is alive elsewhere.
 func (q *inspector) stuck() {
-	least := max(stuckRows, int(stuckShare*float64(len(q.v))))
+	least := q.stuckLeast()
 	longest, at, rows, stretches := 0, 0, 0, 0
-	low, high := q.sorted[0], q.sorted[len(q.sorted)-1]
+	again := q.again()
 	for i := 0; i < len(q.v); {
 		k := i + 1
 		for k < len(q.v) && q.v[k] == q.v[i] {
 			k++
 		}
-		if n := k - i; n >= least && q.v[i] != 0 && q.v[i] > low && q.v[i] < high {
+		if n := k - i; n >= least && q.v[i] != 0 && !again[q.v[i]] {
 			rows, stretches = rows+n, stretches+1
 			if n > longest {
 				longest, at = n, i

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 )
 
 // timeline makes rising times of stamps as they stand in the file, and the order of rows.
@@ -43,6 +44,9 @@ func (im *importer) timeline() (*timeline, error) {
 	tl.walk()
 	if c := tl.choice("clock reset", "append", "refuse"); len(tl.resets) > 0 && c == "refuse" {
 		return nil, fmt.Errorf("line %d: the clock falls back, and the recipe refuses that", im.lineOf(tl.resets[0].row))
+	}
+	if p := tl.Recipe.Time.Pauses; len(p) > len(tl.resets) {
+		return nil, fmt.Errorf("the recipe tells of %s of a clock that begins anew, the file has %d; take out what is too much", counted(len(p), "pause"), len(tl.resets))
 	}
 	tl.sayJumps()
 	tl.sort()
@@ -109,12 +113,20 @@ func (tl *timeline) walk() {
 			t[i] = x
 			continue
 		case d < 0 || d > 30*day && d > 100*(prev-t[0]):
-			by := prev + tl.dt - x
-			off, x = off+by, prev+tl.dt
+			by := prev + tl.pause(len(tl.resets)) - x
+			off, x = off+by, x+by
 			tl.resets = append(tl.resets, jump{i, by})
 		}
 		t[i], prev = x, x
 	}
+}
+
+// pause is the time from the last row before the clock began anew to the first after.
+func (tl *timeline) pause(k int) float64 {
+	if p := tl.Recipe.Time.Pauses; k < len(p) {
+		return p[k]
+	}
+	return tl.dt
 }
 
 // hourOff reports whether a step is one row and an hour more or less, at a full hour of
@@ -183,9 +195,13 @@ func (tl *timeline) sayJumps() {
 		add("summer time", tl.summer, false, how+", as where summer time begins or ends", "evened out", "even out", "even out", "leave")
 	}
 	if len(tl.resets) > 0 {
-		r := tl.resets[0]
-		add("clock reset", tl.resets, true, fmt.Sprintf("the clock jumps %s, the first time by %.6g s", times(len(tl.resets)), -(r.by)+tl.dt),
-			"what follows is put one step after what was before; how long the pause was is not known", "append", "append", "refuse")
+		r, p := tl.resets[0], tl.Recipe.Time.Pauses
+		done := "what follows is put one step after what was before; how long the pause was is not known"
+		if len(p) > 0 {
+			done = fmt.Sprintf("what follows is put after the pauses that the recipe tells, %s s", strings.Trim(fmt.Sprint(p[:min(len(p), len(tl.resets))]), "[]"))
+		}
+		add("clock reset", tl.resets, len(p) < len(tl.resets), fmt.Sprintf("the clock jumps %s, the first time by %.6g s", times(len(tl.resets)), -(r.by)+tl.pause(0)),
+			done, "append", "append", "refuse")
 	}
 }
 
@@ -301,8 +317,12 @@ func (tl *timeline) counted() {
 			last = c
 		}
 	}
+	done := ""
+	if tl.Recipe.Time.Form == Spaced {
+		done = "rows stand at the times that it gives them"
+	}
 	if first >= 0 {
 		tl.Corrections = append(tl.Corrections, Correction{Key: "record counter", Count: missing, Line: tl.lineOf(tl.row(first)), T: tl.Time[first], Warns: true,
-			Text: fmt.Sprintf("by the record counter %q, %s missing", tl.Recipe.Time.Counter, counted(missing, "row"))})
+			Text: fmt.Sprintf("by the record counter %q, %s missing", tl.Recipe.Time.Counter, counted(missing, "row")), Done: done})
 	}
 }
