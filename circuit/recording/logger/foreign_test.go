@@ -197,3 +197,9 @@ func TestForeignIsWarnedOf(t *testing.T) {
 		t.Errorf("%+v, %d rows", c, len(r.Time))
 	}
 }
+
+// Recordings of kinds that the others leave out: stamps of figures only, minutes that run over the hour, a clock with
+// dots, a head over two lines, fillers and a loss of power, what is below zero between brackets, heads that change half way.
+func TestOdd(t *testing.T) {
+	folder(t, "testdata/odd", closeness{value: 1e-9, seconds: 0.2e-3})
+}

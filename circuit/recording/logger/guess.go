@@ -263,6 +263,7 @@ func (g *guesser) heads() {
 	}
 	above := []int{}
 	for i := g.First - 2; i >= 0 && len(above) < 3; i-- {
+		i = headStart(g.lines, i)
 		line := bytes.TrimLeft(g.lines[i], "#%/ ")
 		cells := g.cellsOf(i + 1)
 		for len(cells) > n && len(cells[len(cells)-1]) == 0 {
@@ -292,8 +293,39 @@ func (g *guesser) heads() {
 }
 
 func (g *guesser) cellsOf(line int) [][]byte {
-	return g.split.head(g.lines[line-1])
+	return g.split.head(headText(g.lines, line-1))
 }
+
+// headStart returns the line in which a head begins that ends in line i, for a cell between quotes may go over several.
+func headStart(lines [][]byte, i int) int {
+	if quotes(lines[i])%2 == 0 {
+		return i
+	}
+	for k := i - 1; k >= max(0, i-40); k-- {
+		if n := quotes(lines[k]); n%2 == 1 && headEnd(lines, k) == i {
+			return k
+		}
+	}
+	return i
+}
+
+// headEnd returns the line in which the quotes are closed that line i leaves open; i where none does.
+func headEnd(lines [][]byte, i int) int {
+	open := false
+	for k := i; k < min(len(lines), i+40); k++ {
+		if open = open != (quotes(lines[k])%2 == 1); !open {
+			return k
+		}
+	}
+	return i
+}
+
+// headText returns a head as one line.
+func headText(lines [][]byte, i int) []byte {
+	return bytes.Join(lines[i:headEnd(lines, i)+1], []byte(" "))
+}
+
+func quotes(line []byte) int { return bytes.Count(line, []byte{'"'}) }
 
 // words counts the cells that are neither numbers nor empty.
 func words(cells [][]byte) (n int) {
@@ -328,7 +360,7 @@ func (r *Recipe) header(lines [][]byte, width int) (names, units []string) {
 		if line < 1 || line > len(lines) {
 			return nil
 		}
-		return split.head(lines[line-1])
+		return split.head(headText(lines, line-1))
 	}
 	head, row := cells(r.Head), cells(r.UnitsRow)
 	for len(head) > width && len(head[len(head)-1]) == 0 {

@@ -37,7 +37,7 @@ func (g *guesser) times() {
 			both = i
 		case dateCol < 0 && d > k:
 			dateCol = i
-		case clockCol < 0 && k > 0:
+		case clockCol < 0 && (k > 0 || dateCol >= 0): // a clock with dots looks like a date
 			clockCol = i
 		}
 	}
@@ -281,6 +281,10 @@ func (g *guesser) order(column int) {
 	for _, cells := range g.rows {
 		if column >= len(cells) {
 			continue
+		}
+		if _, _, ok := compact(cells[column]); ok {
+			g.Time.Order = "ymd"
+			return
 		}
 		v, width, named, _, ok := fields(cells[column])
 		if !ok {

@@ -67,7 +67,7 @@ func readUnit(text string) (unitIn, bool) {
 			return unitIn{u, true}, true
 		}
 	}
-	for _, end := range []string{"(g)", "(g", " g", "g", "(rel)", " rel"} {
+	for _, end := range []string{"(g)", "(g", " g", "g", "(rel)", " rel", "(ü)", "(ü", " ü", "ü"} {
 		if base, ok := strings.CutSuffix(low, end); ok && base != "" {
 			if u, ok := units.Find(strings.TrimSpace(base), units.Pressure); ok {
 				return unitIn{u, false}, true

@@ -51,6 +51,8 @@ type importer struct {
 	*Recording
 	f      *File
 	names  []string
+	units  []string // of the columns, as the head has them
+	fault  error    // what ends the import
 	split  splitter
 	n      *numbers
 	stamps stamps
@@ -210,7 +212,7 @@ func (f *File) importer(r Recipe) (*importer, error) {
 			width = max(width, len(trimmed(im.split.split(line, nil))))
 		}
 	}
-	im.names, _ = r.header(lines, width)
+	im.names, im.units = r.header(lines, width)
 	find := func(name string) (int, error) {
 		for i, n := range im.names {
 			if n == name {
@@ -286,7 +288,9 @@ func (im *importer) stream(src io.Reader) error {
 		}
 		im.cells = im.split.split(line, im.cells[:0])
 		if !im.row() {
-			im.other(line)
+			if im.other(line); im.fault != nil {
+				return im.fault
+			}
 		}
 	}
 	im.Lines = l.n

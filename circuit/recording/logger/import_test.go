@@ -123,7 +123,7 @@ func TestChoices(t *testing.T) {
 
 func TestSpikesAndStuckChannels(t *testing.T) {
 	x := truthOf(600, 0.1)
-	x.p[100], x.q[200] = 9999, x.q[200]+60
+	x.p[100], x.q[200] = 9876, x.q[200]+60
 	for i := 300; i < 420; i++ {
 		x.v[i] = x.v[300]
 	}

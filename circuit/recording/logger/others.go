@@ -54,9 +54,37 @@ func (im *importer) other(line []byte) {
 		} else {
 			im.moreMark++
 		}
+	case im.otherHead(line):
+		o.heads.with(im.line, b)
 	default:
 		im.leftOver(b)
 	}
+}
+
+// otherHead reports whether a line names the columns again. Where it names them otherwise,
+// the import ends, for rows would be read under names or units that are not theirs.
+func (im *importer) otherHead(line []byte) bool {
+	named, same, all := 0, 0, 0
+	for i, c := range im.split.head(line) {
+		if len(c) == 0 {
+			continue
+		}
+		all++
+		name, unit := nameAndUnit(string(c))
+		if contains(im.names, name) {
+			named++
+		}
+		if i < len(im.names) && im.names[i] == name && (unit == "" || im.units[i] == "" || im.units[i] == unit) {
+			same++
+		}
+	}
+	if named < 2 || 2*named < all {
+		return false
+	}
+	if same < all && im.fault == nil {
+		im.fault = fmt.Errorf("line %d names the columns otherwise than line %d: %q; cut the file there and import the parts one by one", im.line, im.Recipe.Head, shortened(line))
+	}
+	return true
 }
 
 // leftOver keeps lines that may be a footer until a row follows.

@@ -84,6 +84,7 @@ func (q *inspector) inspect() bool {
 	q.loop()
 	q.counter()
 	s.si(q.v)
+	q.fillers()
 	q.sampled()
 	q.cells()
 	if len(q.sorted) == 0 {

@@ -22,6 +22,40 @@ const (
 	clippedRows = 3
 )
 
+// fillers are numbers that loggers write where they have no value; common practice, no source.
+var fillers = []float64{999, 999.9, 999.99, 9999, 9999.9, 9999.99, 99999, 999999, 32767, 32768, 65535}
+
+// fillers looks for such a number that is more than three times as large as all other values.
+func (q *inspector) fillers() {
+	s := q.s
+	var rows []int
+	at, rest := 0.0, 0.0
+	for i := range q.v {
+		switch x := s.raw.at(q.row(i)); {
+		case at == 0 && slices.Contains(fillers, math.Abs(x)):
+			at, rows = x, append(rows, i)
+		case at != 0 && x == at:
+			rows = append(rows, i)
+		case x == x:
+			rest = math.Max(rest, math.Abs(x))
+		}
+	}
+	if len(rows) == 0 || 2*len(rows) > len(q.v) || rest == 0 || 3*rest > math.Abs(at) || s.Counter || s.Scaling != nil {
+		return
+	}
+	choice := q.pick("filler", "remove", "leave")
+	c := q.where(Correction{Key: "filler", Count: len(rows), Warns: true, Choice: choice, Choices: []string{"remove", "leave"},
+		Text: fmt.Sprintf("%s %g, which loggers write for no value; all others are below %.4g", rowsHave(len(rows)), at, rest)}, rows[0])
+	if choice == "remove" {
+		c.Done = "taken as straight lines between the values around"
+		s.removed = append(s.removed, rows...)
+		for _, i := range rows {
+			q.v[i] = math.NaN()
+		}
+	}
+	q.say(c)
+}
+
 // spikes looks for rows that stand alone, far from those around.
 func (q *inspector) spikes() {
 	if len(q.v) < 20 {
