@@ -17,7 +17,7 @@ type sample struct {
 const sampleLines = 3000
 
 func (f *File) sample(encoding string) sample {
-	s := sample{whole: f.Size <= headBytes}
+	s := sample{whole: f.whole()}
 	for l := newLines(bytes.NewReader(text(f.head, encoding))); len(s.lines) < sampleLines; {
 		line := l.next()
 		if line == nil {
@@ -25,7 +25,7 @@ func (f *File) sample(encoding string) sample {
 		}
 		s.lines = append(s.lines, bytes.Clone(line))
 	}
-	if !s.whole && len(s.lines) > 1 && len(s.lines) < sampleLines {
+	if len(f.head) == headBytes && len(s.lines) > 1 && len(s.lines) < sampleLines {
 		s.lines = s.lines[:len(s.lines)-1] // cut in its middle
 	}
 	return s
@@ -240,7 +240,7 @@ func (g *guesser) heads() {
 	for i, line := range g.lines {
 		cells := g.split.split(line, nil)
 		sh := shapeOf(cells)
-		if !sh.row() || sh.all*2 < n || sh.good*2 < n && sh.cells == n || g.unitLike(cells) {
+		if !sh.row() || sh.all*2 < n || sh.all < n && sh.good < sh.cells || sh.good*2 < n && sh.cells == n || g.unitLike(cells) {
 			continue
 		}
 		next, of := 0, 0
@@ -387,7 +387,7 @@ func (r *Recipe) header(lines [][]byte, width int) (names, units []string) {
 
 // heading reads the lines up to the first row.
 func (f *File) heading(r *Recipe) (lines [][]byte, err error) {
-	in, err := f.open()
+	in, err := f.parts[0].open()
 	if err != nil {
 		return nil, err
 	}

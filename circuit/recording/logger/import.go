@@ -15,7 +15,7 @@ import (
 
 // Recording is what an import makes of a file.
 type Recording struct {
-	Name, SHA256 string // of the file as it was read
+	Name, SHA256 string // of the file as it was read; of all, one after another, where several are joined
 	Recipe       Recipe
 	Lines        int       // of the file
 	Time         []float64 // s, rising
@@ -31,6 +31,7 @@ type Mark struct {
 	T    float64 // s
 	Line int
 	Text string
+	File string // that Line is of, where several are joined
 }
 
 // maxMarks bounds the marks kept; more are counted.
@@ -69,6 +70,7 @@ type importer struct {
 	x0                      float64
 	begun                   bool
 
+	parts    []begun
 	steps    []step // where rows stop following line by line
 	rows     int
 	line     int
@@ -100,15 +102,12 @@ func (f *File) Import(ctx context.Context, r Recipe, progress func(done, total i
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", f.Name, err)
 	}
-	in, err := f.open()
-	if err != nil {
-		return nil, err
-	}
-	defer in.Close()
 	sum := sha256.New()
-	src := &watched{in: in, sum: sum, ctx: ctx, total: f.Size, progress: progress}
-	if err := im.stream(src); err != nil {
-		return nil, fmt.Errorf("%s: %w", f.Name, err)
+	src := &watched{sum: sum, ctx: ctx, total: f.Size, progress: progress}
+	for _, p := range f.parts {
+		if err := im.part(p, src); err != nil {
+			return nil, fmt.Errorf("%s: %w", p.name, err)
+		}
 	}
 	im.SHA256 = hex.EncodeToString(sum.Sum(nil))
 	if im.rows == 0 {
@@ -275,7 +274,19 @@ func (f *File) importer(r Recipe) (*importer, error) {
 	return im, nil
 }
 
-// stream reads all lines.
+// part reads one of the files of a recording.
+func (im *importer) part(p part, src *watched) error {
+	in, err := p.open()
+	if err != nil {
+		return err
+	}
+	defer in.Close()
+	src.in = in
+	im.begin()
+	return im.stream(src)
+}
+
+// stream reads all lines of a part.
 func (im *importer) stream(src io.Reader) error {
 	l := newLines(decoded(src, im.Recipe.Encoding))
 	for {
@@ -283,7 +294,7 @@ func (im *importer) stream(src io.Reader) error {
 		if line == nil {
 			break
 		}
-		if im.line = l.n; im.line < im.Recipe.First {
+		if im.line = im.Lines + l.n; im.line < im.Recipe.First {
 			continue
 		}
 		im.cells = im.split.split(line, im.cells[:0])
@@ -293,7 +304,7 @@ func (im *importer) stream(src io.Reader) error {
 			}
 		}
 	}
-	im.Lines = l.n
+	im.Lines += l.n
 	if l.err != nil && l.err != io.EOF {
 		if l.err == io.ErrShortBuffer {
 			return fmt.Errorf("line %d is longer than %d MB; this is no table", l.n+1, maxLine>>20)

@@ -199,7 +199,7 @@ func (q *inspector) clipped() {
 				run++
 				continue
 			}
-			if run >= clippedRows {
+			if run >= clippedRows && q.steep(i-run, i, end.sign) {
 				if rows, runs = rows+run, runs+1; first < 0 {
 					first = i - run
 				}
@@ -241,6 +241,32 @@ func (q *inspector) again() map[float64]bool {
 		}
 	}
 	return map[float64]bool{low: stands[low] > 1, high: stands[high] > 1}
+}
+
+// steep reports whether a channel comes to the stand of rows a to b, or leaves it, by more
+// than a few of its smallest steps: a peak that was not cut off is round.
+func (q *inspector) steep(a, b int, sign float64) bool {
+	most := 0.0
+	if a > 0 {
+		most = sign * (q.v[a] - q.v[a-1])
+	}
+	if b < len(q.v) {
+		most = math.Max(most, sign*(q.v[a]-q.v[b]))
+	}
+	return most > 3.5*q.quantum()
+}
+
+// quantum is the smallest step of the channel.
+func (q *inspector) quantum() float64 {
+	if q.least == 0 {
+		q.least = math.Inf(1)
+		for i := 1; i < len(q.v); i++ {
+			if d := math.Abs(q.v[i] - q.v[i-1]); d > 1e-9*math.Abs(q.v[i]) && d < q.least {
+				q.least = d
+			}
+		}
+	}
+	return q.least
 }
 
 // stuck looks for long stretches of one value, of a channel that is alive elsewhere.

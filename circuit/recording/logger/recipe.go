@@ -185,6 +185,7 @@ type Correction struct {
 	Channel string   // "" = the rows as a whole
 	Count   int      // rows or cells
 	Line    int      // of the file, of the first; 0 = nowhere in particular
+	File    string   // that Line is of, where several are joined
 	T       float64  // s, of the first
 	Text    string   // what was found, with its numbers
 	Done    string   // what was done; "" = nothing, the data are as they were
@@ -203,6 +204,9 @@ func (c Correction) String() string {
 		s += fmt.Sprintf(", first in line %d", c.Line)
 	} else if c.Line > 0 {
 		s += fmt.Sprintf(", line %d", c.Line)
+	}
+	if c.File != "" {
+		s += " of " + c.File
 	}
 	if c.Done != "" {
 		return s + "; " + c.Done

@@ -15,6 +15,8 @@ type timeline struct {
 	dt    float64   // s, median step
 	late  []int32   // rows that came too late
 
+	dropped []int // rows that the part before has already; their times are NaN
+
 	midnights, summer, resets []jump
 }
 
@@ -40,6 +42,9 @@ func (im *importer) timeline() (*timeline, error) {
 	tl.dt = medianStep(tl.t, nil)
 	if !(tl.dt > 0) {
 		return nil, fmt.Errorf("the time stamps never rise; say which column holds them")
+	}
+	if err := tl.joints(); err != nil {
+		return nil, err
 	}
 	tl.walk()
 	if c := tl.choice("clock reset", "append", "refuse"); len(tl.resets) > 0 && c == "refuse" {
@@ -96,6 +101,9 @@ func (tl *timeline) walk() {
 	wallClock := tl.Recipe.Time.Form == Clock || tl.Recipe.Time.Form == Dated && !tl.stamps.zoned
 	wraps := tl.Recipe.Time.Form == Clock || tl.stamps.undated > 0
 	for i := 1; i < len(t); i++ {
+		if t[i] != t[i] {
+			continue
+		}
 		x := t[i] + off
 		if wraps && x-prev < -day/2 {
 			off, x = off+day, x+day
@@ -207,12 +215,14 @@ func (tl *timeline) sayJumps() {
 
 // sort puts late rows where they belong, or drops them.
 func (tl *timeline) sort() {
-	if len(tl.late) == 0 {
+	if len(tl.late)+len(tl.dropped) == 0 {
 		return
 	}
-	first := int(tl.late[0])
-	c := Correction{Key: "out of order", Count: len(tl.late), Line: tl.lineOf(first), T: tl.t[first], Text: counted(len(tl.late), "row") + " out of order",
+	c := Correction{Key: "out of order", Count: len(tl.late), Text: counted(len(tl.late), "row") + " out of order",
 		Choices: []string{"sort", "drop"}, Choice: tl.choice("out of order", "sort", "drop"), Done: "sorted by time"}
+	if len(tl.late) > 0 {
+		c.Line, c.T = tl.lineOf(int(tl.late[0])), tl.t[tl.late[0]]
+	}
 	tl.index = make([]int32, 0, len(tl.t))
 	k := 0
 	for i := range tl.t {
@@ -222,6 +232,9 @@ func (tl *timeline) sort() {
 				continue
 			}
 		}
+		if tl.t[i] != tl.t[i] {
+			continue
+		}
 		tl.index = append(tl.index, int32(i))
 		for j := len(tl.index) - 1; j > 0 && tl.t[tl.index[j-1]] > tl.t[tl.index[j]]; j-- {
 			tl.index[j-1], tl.index[j] = tl.index[j], tl.index[j-1]
@@ -230,7 +243,9 @@ func (tl *timeline) sort() {
 	if c.Choice == "drop" {
 		c.Done = "left out"
 	}
-	tl.Corrections = append(tl.Corrections, c)
+	if c.Count > 0 {
+		tl.Corrections = append(tl.Corrections, c)
+	}
 }
 
 func (tl *timeline) len() int {
