@@ -23,7 +23,7 @@ import (
 
 // importCall is what the command line of `barlitre import` asks for.
 type importCall struct {
-	file    string
+	files   []string
 	rows    int
 	yaml    bool
 	answers [][2]string
@@ -61,13 +61,30 @@ func parseImport(args []string, errs io.Writer) (importCall, error) {
 	switch {
 	case err != nil:
 		return c, err
-	case len(files) != 1:
-		return c, errors.New("name one recording")
+	case len(files) == 0:
+		return c, errors.New("name one recording, or the files that it was split into")
 	case c.rows < 0 || c.rows > 1000:
 		return c, errors.New("-rows must lie between 0 and 1000")
 	}
-	c.file = files[0]
-	return c, nil
+	c.files, err = listed(files)
+	return c, err
+}
+
+// listed puts files in the place of patterns such as press_*.csv, in the order in which people count.
+func listed(names []string) (out []string, err error) {
+	for _, n := range names {
+		if _, err := os.Stat(n); err == nil || !strings.ContainsAny(n, "*?[") {
+			out = append(out, n)
+			continue
+		}
+		found, err := filepath.Glob(n)
+		if err != nil || len(found) == 0 {
+			return nil, fmt.Errorf("%s: there is no such file", n)
+		}
+		logger.InOrder(found)
+		out = append(out, found...)
+	}
+	return out, nil
 }
 
 func unless(ok bool, text string) error {
@@ -94,7 +111,7 @@ func importFile(args []string, out, errs io.Writer) int {
 }
 
 func (c importCall) run(out, errs io.Writer) error {
-	file, err := logger.Open(c.file)
+	file, err := logger.OpenFiles(c.files...)
 	if err != nil {
 		return err
 	}
@@ -143,7 +160,7 @@ func (c importCall) run(out, errs io.Writer) error {
 		}
 	}
 	if c.yaml {
-		text, err := audit.Setup{File: filepath.Base(c.file), SHA256: rec.SHA256, Recipe: r}.Text()
+		text, err := audit.Setup{File: filepath.Base(c.files[0]), More: basesOf(c.files[1:]), SHA256: rec.SHA256, Recipe: r}.Text()
 		if err != nil {
 			return err
 		}
@@ -151,6 +168,13 @@ func (c importCall) run(out, errs io.Writer) error {
 		fmt.Fprintln(out, text)
 	}
 	return nil
+}
+
+func basesOf(paths []string) (names []string) {
+	for _, p := range paths {
+		names = append(names, filepath.Base(p))
+	}
+	return names
 }
 
 // progressLine shows how far a long file is, in one line that it writes over.

@@ -31,6 +31,7 @@ var arrows = map[string]arrow{
 	"circuit/recording/channels": {},
 	"circuit/recording/rate":     {},
 	"circuit/recording/cycles":   {outside: []string{"gonum.org/v1/gonum"}},
+	"circuit/recording/align":    {outside: []string{"gonum.org/v1/gonum"}},
 	"circuit/drawing":            {ours: []string{"machines/units"}},
 	"circuit":                    {ours: []string{"circuit/balance", "circuit/duty", "circuit/drawing", "machines", "machines/units"}, outside: []string{"gopkg.in/yaml.v3"}},
 	"samples":                    {ours: []string{"audit", "circuit"}}, // tests only: the samples are data

@@ -7,6 +7,7 @@ import (
 	"os"
 	"path/filepath"
 	"slices"
+	"strings"
 
 	"gopkg.in/yaml.v3"
 
@@ -171,6 +172,11 @@ const Format = "barlitre/1"
 //	  choices: {"p1: zero offset": leave, out of order: drop}
 //	  air_pa: 101300              of the air that absolute pressures stand above; else the standard atmosphere
 //	columns: {X1.pressure: p1}
+//	also:                       recordings of other loggers: their channels are set beside those of the first
+//	- {file: meter.csv, sha256: 51ab..., import: {...}, offset: 12.3 s}
+//	- {file: drive.csv, import: {...}, align: {channel: p1, with: "P main", within: 60 s}}
+//	                            the offset is found: where channel of the first and with of this one agree best
+//	file: [press_09h.csv, press_10h.csv]   in place of one file: those it was split into, in order
 //	derived:
 //	  ram.speed: {law: speed of position, position: x1, window: 0.2 s}
 //	  ram.load: {law: chamber pressures, a: p1, b: p2, bore: 80 mm, rod: 56 mm,
@@ -275,7 +281,21 @@ type Oil struct {
 }
 
 // Source names the recording that a duty was taken from.
-type Source struct{ File, SHA256 string }
+type Source struct {
+	File, SHA256 string
+	Rest         string // further files that it is read from, one a line
+}
+
+// Files lists all files of a source in their order; nil where a duty has none.
+func (s Source) Files() []string {
+	if s.File == "" {
+		return nil
+	}
+	if s.Rest == "" {
+		return []string{s.File}
+	}
+	return append([]string{s.File}, strings.Split(s.Rest, "\n")...)
+}
 
 // Role says what a circuit stands for.
 type Role string

@@ -116,12 +116,12 @@ func (im *importer) since(ns int64, v float64, d int) (float64, int) {
 func (im *importer) start(ns int64, v float64) {
 	switch im.Recipe.Time.Form {
 	case Dated:
-		im.Start = time.Unix(0, ns).UTC().Format("2006-01-02 15:04:05.999")
+		im.Start = time.Unix(0, ns).UTC().Format(startForm)
 	case Clock:
 		im.Start = time.Unix(0, ns).UTC().Format("15:04:05.999")
 	case Epoch:
 		s := im.stamps.seconds(v)
-		im.Start = time.Unix(0, 0).Add(time.Duration(s * 1e9)).UTC().Format("2006-01-02 15:04:05.999")
+		im.Start = time.Unix(0, 0).Add(time.Duration(s * 1e9)).UTC().Format(startForm)
 	case Serial: // day 25569 is 1 January 1970
 		im.Start = time.Unix(int64(math.Round((v-25569)*units.Day)), 0).UTC().Format("2006-01-02 15:04:05")
 	}
