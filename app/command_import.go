@@ -6,6 +6,7 @@ import (
 	"flag"
 	"fmt"
 	"io"
+	"maps"
 	"math"
 	"os"
 	"os/signal"
@@ -22,10 +23,11 @@ import (
 
 // importCall is what the command line of `barlitre import` asks for.
 type importCall struct {
-	file    string
+	files   []string
 	rows    int
 	yaml    bool
 	answers [][2]string
+	told    string // file of what is known of the recording
 	choices map[string]string
 	rate    []string // two channels
 	cycles  []string // channels that move, then those that are held
@@ -43,6 +45,7 @@ func parseImport(args []string, errs io.Writer) (importCall, error) {
 		c.answers = append(c.answers, [2]string{field, choice})
 		return unless(ok, "write FIELD=CHOICE")
 	})
+	f.StringVar(&c.told, "told", "", "lay over the guess what `FILE` says of the recording (YAML with answers, recipe, channels)")
 	f.Func("choose", "answer a correction otherwise, as in `\"p1: zero offset=leave\"`", func(s string) error {
 		key, choice, ok := strings.Cut(s, "=")
 		c.choices[key] = choice
@@ -58,13 +61,30 @@ func parseImport(args []string, errs io.Writer) (importCall, error) {
 	switch {
 	case err != nil:
 		return c, err
-	case len(files) != 1:
-		return c, errors.New("name one recording")
+	case len(files) == 0:
+		return c, errors.New("name one recording, or the files that it was split into")
 	case c.rows < 0 || c.rows > 1000:
 		return c, errors.New("-rows must lie between 0 and 1000")
 	}
-	c.file = files[0]
-	return c, nil
+	c.files, err = listed(files)
+	return c, err
+}
+
+// listed puts files in the place of patterns such as press_*.csv, in the order in which people count.
+func listed(names []string) (out []string, err error) {
+	for _, n := range names {
+		if _, err := os.Stat(n); err == nil || !strings.ContainsAny(n, "*?[") {
+			out = append(out, n)
+			continue
+		}
+		found, err := filepath.Glob(n)
+		if err != nil || len(found) == 0 {
+			return nil, fmt.Errorf("%s: there is no such file", n)
+		}
+		logger.InOrder(found)
+		out = append(out, found...)
+	}
+	return out, nil
 }
 
 func unless(ok bool, text string) error {
@@ -91,26 +111,36 @@ func importFile(args []string, out, errs io.Writer) int {
 }
 
 func (c importCall) run(out, errs io.Writer) error {
-	file, err := logger.Open(c.file)
+	file, err := logger.OpenFiles(c.files...)
 	if err != nil {
 		return err
 	}
 	r := file.Guess()
+	if c.told != "" {
+		text, err := os.ReadFile(c.told)
+		if err != nil {
+			return err
+		}
+		if err := r.Tell(text); err != nil {
+			return fmt.Errorf("%s: %w", c.told, err)
+		}
+	}
 	for _, a := range c.answers {
 		if err := r.Answer(a[0], a[1]); err != nil {
 			return err
 		}
 	}
-	if len(c.choices) > 0 {
+	if r.Choices == nil {
 		r.Choices = c.choices
 	}
+	maps.Copy(r.Choices, c.choices)
 	printRecipe(out, file, r)
 	if p, err := file.Preview(r, c.rows); err == nil {
 		printPreview(out, r, p)
 	}
-	for _, q := range r.Questions {
+	for _, q := range r.Open() {
 		heading(out, "Question")
-		wrap(out, fmt.Sprintf("%s: %s (-answer %s=…)", q.Field, q.Text, q.Field))
+		wrap(out, fmt.Sprintf("%s: %s (-answer \"%s=…\")", q.Field, q.Text, q.Field))
 	}
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
 	defer stop()
@@ -130,7 +160,7 @@ func (c importCall) run(out, errs io.Writer) error {
 		}
 	}
 	if c.yaml {
-		text, err := audit.Setup{File: filepath.Base(c.file), SHA256: rec.SHA256, Recipe: r}.Text()
+		text, err := audit.Setup{File: filepath.Base(c.files[0]), More: basesOf(c.files[1:]), SHA256: rec.SHA256, Recipe: r}.Text()
 		if err != nil {
 			return err
 		}
@@ -138,6 +168,13 @@ func (c importCall) run(out, errs io.Writer) error {
 		fmt.Fprintln(out, text)
 	}
 	return nil
+}
+
+func basesOf(paths []string) (names []string) {
+	for _, p := range paths {
+		names = append(names, filepath.Base(p))
+	}
+	return names
 }
 
 // progressLine shows how far a long file is, in one line that it writes over.

@@ -49,10 +49,34 @@ func TestImportRefuses(t *testing.T) {
 		}
 	}
 	code, out, _ := called("import", "../circuit/recording/logger/testdata/quirks/07-ambiguous-date.csv")
-	if code != exitUnreadable || !strings.Contains(out, "-answer order=") {
+	if code != exitUnreadable || !strings.Contains(out, "-answer \"order=") {
 		t.Errorf("the question is not put:\n%s", out)
 	}
 	if code, _, errs := called("import", "../circuit/recording/logger/testdata/quirks/07-ambiguous-date.csv", "-answer", "order=mdy"); code != exitOK {
 		t.Errorf("answered: exit %d, %s", code, errs)
+	}
+}
+
+// What only the owner knows of a recording is told in a file, or as an answer to a question.
+func TestImportIsTold(t *testing.T) {
+	dir := "../circuit/recording/logger/testdata/foreign/"
+	code, out, errs := called("import", dir+"pressa_riavvio.csv", "-told", dir+"pressa_riavvio.told.yaml")
+	out = strings.Join(strings.Fields(out), " ")
+	if code != exitOK || !strings.Contains(out, "after the pauses that the recipe tells, 42 7.5 s") {
+		t.Errorf("exit %d, %s\n%s", code, errs, out)
+	}
+	signals := []string{"import", dir + "winde_mA_ohne_bereich.csv", "-answer", "Kanal 1: scaling=0 to 250 bar", "-answer", "Kanal 2: scaling=mA"}
+	if code, out, _ = called(signals...); code != exitUnreadable || !strings.Contains(out, `-answer "Kanal 3: scaling=`) {
+		t.Errorf("exit %d\n%s", code, out)
+	}
+	if code, out, errs = called(append(signals, "-answer", "Kanal 3: scaling=-20 to +120 °C")...); code != exitOK || !strings.Contains(out, "-20 to 120 C") && !strings.Contains(out, "for -20 to 120") {
+		t.Errorf("exit %d, %s\n%s", code, errs, out)
+	}
+	bad := filepath.Join(t.TempDir(), "told.yaml")
+	if err := os.WriteFile(bad, []byte("recipe: {pause: 3}\n"), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	if code, _, errs = called("import", dir+"pressa_riavvio.csv", "-told", bad); code != exitUnreadable || !strings.Contains(errs, "pause") || !strings.Contains(errs, "told.yaml") {
+		t.Errorf("exit %d, %s", code, errs)
 	}
 }

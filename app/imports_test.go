@@ -27,11 +27,12 @@ var arrows = map[string]arrow{
 	"circuit/balance":            {outside: []string{"gonum.org/v1/gonum"}},
 	"circuit/duty":               {ours: []string{"machines/units"}},
 	"circuit/recording":          {ours: []string{"machines/units"}},
-	"circuit/recording/logger":   {ours: []string{"machines/units"}, outside: []string{"golang.org/x/text"}},
+	"circuit/recording/logger":   {ours: []string{"machines/units"}, outside: []string{"golang.org/x/text", "gopkg.in/yaml.v3"}},
 	"circuit/recording/channels": {},
 	"circuit/recording/rate":     {},
 	"circuit/recording/cycles":   {outside: []string{"gonum.org/v1/gonum"}},
 	"circuit/logged":             {ours: []string{"circuit/duty", "circuit/recording/...", "machines/units"}},
+	"circuit/recording/align":    {outside: []string{"gonum.org/v1/gonum"}},
 	"circuit/drawing":            {ours: []string{"machines/units"}},
 	"circuit":                    {ours: []string{"circuit/balance", "circuit/duty", "circuit/drawing", "machines", "machines/units"}, outside: []string{"gopkg.in/yaml.v3"}},
 	"samples":                    {ours: []string{"audit", "circuit"}}, // tests only: the samples are data

@@ -7,6 +7,7 @@ import (
 	"os"
 	"path/filepath"
 	"slices"
+	"strings"
 
 	"gopkg.in/yaml.v3"
 
@@ -181,7 +182,8 @@ const Format = "barlitre/1"
 //	  first: 6                    first line of numbers
 //	  time: {columns: [Date, Time], form: dated, order: dmy}
 //	                              form: elapsed or epoch (with unit), clock, dated, serial, or
-//	                              spaced (with interval_s); counter: the column that counts records
+//	                              spaced (with interval_s); counter: the column that counts records;
+//	                              pauses_s: [42, 7.5] where the clock begins anew
 //	  channels:
 //	  - {column: p1, quantity: pressure, unit: bar}
 //	  - {column: p2, quantity: pressure, unit: bar, absolute: yes,
@@ -189,7 +191,13 @@ const Format = "barlitre/1"
 //	  - {column: E1, quantity: energy, unit: kWh, counter: yes}
 //	  - {column: note, text: yes}
 //	  choices: {"p1: zero offset": leave, out of order: drop}
+//	  air_pa: 101300              of the air that absolute pressures stand above; else the standard atmosphere
 //	columns: {X1.pressure: p1}
+//	also:                       recordings of other loggers: their channels are set beside those of the first
+//	- {file: meter.csv, sha256: 51ab..., import: {...}, offset: 12.3 s}
+//	- {file: drive.csv, import: {...}, align: {channel: p1, with: "P main", within: 60 s}}
+//	                            the offset is found: where channel of the first and with of this one agree best
+//	file: [press_09h.csv, press_10h.csv]   in place of one file: those it was split into, in order
 //	derived:
 //	  ram.speed: {law: speed of position, position: x1, window: 0.2 s}
 //	  ram.load: {law: chamber pressures, a: p1, b: p2, bore: 80 mm, rod: 56 mm,
@@ -295,7 +303,21 @@ type Oil struct {
 }
 
 // Source names the recording that a duty was taken from.
-type Source struct{ File, SHA256 string }
+type Source struct {
+	File, SHA256 string
+	Rest         string // further files that it is read from, one a line
+}
+
+// Files lists all files of a source in their order; nil where a duty has none.
+func (s Source) Files() []string {
+	if s.File == "" {
+		return nil
+	}
+	if s.Rest == "" {
+		return []string{s.File}
+	}
+	return append([]string{s.File}, strings.Split(s.Rest, "\n")...)
+}
 
 // Role says what a circuit stands for.
 type Role string

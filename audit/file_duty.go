@@ -64,7 +64,7 @@ func nameOf(item *yaml.Node) (string, *yaml.Node) {
 
 func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
 	s := scope{duty: name, where: fmt.Sprintf("duty %q", name)}
-	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "standstill", "points", "file", "columns", "sha256", "import", "derived", "part", "phases")
+	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "standstill", "points", "file", "columns", "sha256", "import", "also", "derived", "part", "phases")
 	d := &duty.Duty{Name: name}
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
@@ -189,7 +189,7 @@ func (r *reader) points(s scope, d *duty.Duty, f map[string]entry, n *yaml.Node)
 	case recorded && f["import"].at != nil:
 		return r.imported(s, d, f), map[string]*yaml.Node{"": file.value}
 	case recorded:
-		for _, key := range []string{"sha256", "derived", "part"} {
+		for _, key := range []string{"sha256", "derived", "part", "also"} {
 			if e, ok := f[key]; ok {
 				r.bad(s, e.at, key, "goes with import, which says how a recording is read")
 			}

@@ -15,7 +15,8 @@ import (
 
 // Setup is all that a duty says of the recording that it is taken from.
 type Setup struct {
-	File, SHA256 string // beside the audit file, with forward slashes; of the file as it was looked at
+	File, SHA256 string   // beside the audit file, with forward slashes; of the file as it was looked at
+	More         []string // files that go on where File ends, in their order
 	Recipe       logger.Recipe
 	Columns      map[string]string            // by track, such as X1.pressure: the channel
 	Derived      map[string]map[string]string // by track: law and what it needs, as in files
@@ -25,6 +26,13 @@ type Setup struct {
 // keys writes the keys of a duty, each on one line.
 func (s Setup) keys() ([]string, error) {
 	out := []string{"file: " + encode(s.File, false)}
+	if len(s.More) > 0 {
+		list, err := onOneLine(append([]string{s.File}, s.More...))
+		if err != nil {
+			return nil, err
+		}
+		out[0] = "file: " + list
+	}
 	if s.SHA256 != "" {
 		out = append(out, "sha256: "+encode(s.SHA256, false))
 	}
@@ -118,7 +126,7 @@ func (f *File) SetupOf(name string) (Setup, bool) {
 		return Setup{}, false
 	}
 	im := f.Imports[i]
-	s := Setup{File: im.File, SHA256: im.SHA256, Recipe: im.Recipe, Columns: maps.Clone(im.Columns), Derived: map[string]map[string]string{}, Part: im.Part}
+	s := Setup{File: im.File, More: slices.Clone(im.More), SHA256: im.SHA256, Recipe: im.Recipe, Columns: maps.Clone(im.Columns), Derived: map[string]map[string]string{}, Part: im.Part}
 	for _, d := range im.Derived {
 		s.Derived[d.Track] = maps.Clone(d.Says)
 	}

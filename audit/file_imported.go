@@ -23,8 +23,9 @@ import (
 // Import is what a duty was taken from by a recipe: the recording of a logger and what was
 // found and done on the way.
 type Import struct {
-	File, SHA256 string
-	Expected     string // SHA-256 that the audit file has; "" = none
+	File, SHA256 string   // SHA256 of all files, one after another
+	More         []string // files that go on where File ends
+	Expected     string   // SHA-256 that the audit file has; "" = none
 	Recipe       logger.Recipe
 	Rows         int
 	Interval     float64 // s, median
@@ -34,6 +35,7 @@ type Import struct {
 	Columns      map[string]string // by track, the channel it is
 	Derived      []Derived
 	Part         logged.Part // of the recording, that makes the duty
+	Also         []Also // recordings of other loggers, set beside it
 }
 
 // Derived is a track that was worked out from channels.
@@ -45,19 +47,34 @@ type Derived struct {
 // imported reads the rows of a duty from a logger's recording by the recipe under import.
 func (r *reader) imported(s scope, d *duty.Duty, f map[string]entry) Source {
 	file, recipe := f["file"], f["import"]
-	name, ok := r.besideName(s, file.value, "file")
-	if !ok {
+	names := r.besideNames(s, file.value, "file")
+	if len(names) == 0 {
 		return Source{}
 	}
+	name, src := names[0], Source{File: names[0], Rest: strings.Join(names[1:], "\n")}
 	var rp logger.Recipe
 	if !r.recipe(s, recipe.value, &rp) {
-		return Source{File: name}
+		return src
 	}
-	rec := r.recording(s, file.value, name, recipe.value, rp)
+	rec := r.recording(s, file.value, names, recipe.value, rp)
 	if rec == nil {
-		return Source{File: name}
+		return src
 	}
-	im := &Import{File: name, SHA256: rec.SHA256, Recipe: rp, Rows: len(rec.Time), Interval: rec.Interval, Start: rec.Start, Corrections: rec.Corrections, Marks: rec.Marks}
+	if src.SHA256 = rec.SHA256; len(names) > 1 {
+		name = rec.Name
+	}
+	rec, more := r.alongside(s, rec, f["also"])
+	if rec == nil {
+		return src
+	}
+	for _, a := range more {
+		for _, name := range a.Files {
+			if !slices.Contains(src.Files(), name) {
+				src.Rest = strings.TrimPrefix(src.Rest+"\n"+name, "\n")
+			}
+		}
+	}
+	im := &Import{File: names[0], More: names[1:], SHA256: rec.SHA256, Recipe: rp, Rows: len(rec.Time), Interval: rec.Interval, Start: rec.Start, Corrections: rec.Corrections, Marks: rec.Marks, Also: more}
 	if im.Expected = strings.ToLower(r.text(s, f, "sha256")); im.Expected != "" && im.Expected != rec.SHA256 {
 		r.told(s, circuit.Warns, f["sha256"].value, fmt.Sprintf("%s is not the file that this duty was made from: its SHA-256 is %s, the audit has %s; put the old file back, or look through the import again and keep the new number", name, rec.SHA256, im.Expected))
 	}
@@ -72,7 +89,29 @@ func (r *reader) imported(s scope, d *duty.Duty, f map[string]entry) Source {
 	im.Columns = r.channelTracks(s, d, rec, f["columns"].value)
 	im.Derived = r.derived(s, d, rec, f["derived"].value)
 	r.file.Imports[len(r.file.Imports)-1] = im
-	return Source{File: name, SHA256: rec.SHA256}
+	return src
+}
+
+// besideNames reads one name or a list of them; nil when one is faulty.
+func (r *reader) besideNames(s scope, n *yaml.Node, key string) (names []string) {
+	list := []*yaml.Node{n}
+	if n != nil && n.Kind == yaml.SequenceNode {
+		if list = n.Content; len(list) == 0 {
+			r.bad(s, n, key, "names no file")
+		}
+	}
+	for _, x := range list {
+		name, ok := r.besideName(s, x, key)
+		if !ok {
+			return nil
+		}
+		if slices.Contains(names, name) {
+			r.bad(s, x, key, "%s is named twice", name)
+			return nil
+		}
+		names = append(names, name)
+	}
+	return names
 }
 
 // told is a finding that stops nothing.
@@ -129,24 +168,25 @@ func (r *reader) knownKeys(s scope, n *yaml.Node, t reflect.Type) {
 }
 
 // recording imports a file by a recipe, once for every text of the recipe.
-func (r *reader) recording(s scope, at *yaml.Node, name string, recipe *yaml.Node, rp logger.Recipe) *logger.Recording {
+func (r *reader) recording(s scope, at *yaml.Node, names []string, recipe *yaml.Node, rp logger.Recipe) *logger.Recording {
 	text, err := yaml.Marshal(recipe)
 	if err != nil {
 		r.bad(s, recipe, "import", "%v", err)
 		return nil
 	}
+	name := strings.Join(names, "\n")
 	key := name + "\x00" + string(text)
 	if t := r.file.tables[key]; t != nil {
 		r.from = t
 		return t.rec
 	}
 	if r.file.open == nil {
-		r.bad(s, at, "file", "%s cannot be read: the audit has no folder yet; save it first", name)
+		r.bad(s, at, "file", "%s cannot be read: the audit has no folder yet; save it first", names[0])
 		return nil
 	}
-	rec, err := r.file.importFile(name, rp)
+	rec, err := r.file.importFiles(names, rp)
 	if err != nil {
-		r.bad(s, at, "file", "%v", cannotRead(name, err))
+		r.bad(s, at, "file", "%v", cannotRead(names[0], err))
 		return nil
 	}
 	r.file.forget(name)
@@ -178,26 +218,34 @@ func (f *File) forget(name string) {
 	}
 }
 
-func (f *File) importFile(name string, rp logger.Recipe) (*logger.Recording, error) {
-	in, err := f.open(name)
-	if err != nil {
-		return nil, err
-	}
-	size := int64(0)
-	switch x := in.(type) {
-	case interface{ Stat() (fs.FileInfo, error) }:
-		if info, err := x.Stat(); err == nil {
-			size = info.Size()
+func (f *File) importFiles(names []string, rp logger.Recipe) (*logger.Recording, error) {
+	sizes := make([]int64, len(names))
+	for k, name := range names {
+		in, err := f.open(name)
+		if err != nil {
+			return nil, cannotRead(name, err)
 		}
-	case interface{ Size() int64 }:
-		size = x.Size()
+		sizes[k] = sizeOf(in)
+		in.Close()
 	}
-	in.Close()
-	file, err := logger.OpenSource(name, size, func() (io.ReadCloser, error) { return f.open(name) })
+	file, err := logger.OpenSources(names, sizes, func(k int) (io.ReadCloser, error) { return f.open(names[k]) })
 	if err != nil {
 		return nil, err
 	}
 	return file.Import(context.Background(), rp, nil)
+}
+
+// sizeOf tells how many bytes something that was opened holds, 0 where it does not say.
+func sizeOf(in io.Reader) int64 {
+	switch x := in.(type) {
+	case interface{ Stat() (fs.FileInfo, error) }:
+		if info, err := x.Stat(); err == nil {
+			return info.Size()
+		}
+	case interface{ Size() int64 }:
+		return x.Size()
+	}
+	return 0
 }
 
 // channelTracks takes channels as they are: which track is which column.

@@ -148,6 +148,8 @@ type recorded struct {
 	channels         map[string][]float64      // of rec, by column, SI
 	derived          map[string]channels.Track // of rec, by what the file says of them
 	rates            map[rateOf]rate.Check
+	also             []Also                // whose channels rec has too
+	beside           map[string]*recorded  // rec with further recordings, by what the audit says of them
 	in               map[string]units.Unit // by column: the unit that its values were in before they were converted
 	si               map[columnIn][]float64
 }

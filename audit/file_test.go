@@ -73,7 +73,7 @@ func TestReadDuties(t *testing.T) {
 	near(t, "recorded speed", d.Track("ram", duty.Speed).Values[1], 0.15, 1e-12)
 	near(t, "default step", d.Step, 0.002, 1e-12) // a thousandth of 2 s
 	// sha256sum testdata/press.csv
-	want := Source{"press.csv", "04dc5b629336c88e937e2180e6a9d653f828a5bc11e91b89773771daeac8e930"}
+	want := Source{File: "press.csv", SHA256: "04dc5b629336c88e937e2180e6a9d653f828a5bc11e91b89773771daeac8e930"}
 	if d.Name != "Spätschicht" || d.Repeats || f.Sources[1] != want {
 		t.Errorf("duty: %+v, %+v", d, f.Sources[1])
 	}

@@ -176,24 +176,26 @@ func (d *Document) copyRecordings(now state, path string) (made []string, err er
 	}
 	open := now.opener()
 	for _, s := range now.file.Sources {
-		if s.File == "" || open == nil {
-			continue
-		}
-		data, err := wholeFile(open, s.File)
-		if err != nil {
-			return made, fmt.Errorf("save %s: the recording %s cannot be read to be copied along: %w%s", path, filepath.Join(from, s.File), plain(err), d.safe(now))
-		}
-		target := filepath.Join(to, filepath.FromSlash(s.File))
-		if there, err := os.ReadFile(target); err == nil {
-			if !bytes.Equal(there, data) {
-				return made, fmt.Errorf("save %s: the recording %s would replace a different file, %s; choose another folder%s", path, s.File, target, d.safe(now))
+		for _, name := range s.Files() {
+			if open == nil {
+				continue
 			}
-			continue
+			data, err := wholeFile(open, name)
+			if err != nil {
+				return made, fmt.Errorf("save %s: the recording %s cannot be read to be copied along: %w%s", path, filepath.Join(from, name), plain(err), d.safe(now))
+			}
+			target := filepath.Join(to, filepath.FromSlash(name))
+			if there, err := os.ReadFile(target); err == nil {
+				if !bytes.Equal(there, data) {
+					return made, fmt.Errorf("save %s: the recording %s would replace a different file, %s; choose another folder%s", path, name, target, d.safe(now))
+				}
+				continue
+			}
+			if err := copyTo(target, data); err != nil {
+				return made, fmt.Errorf("save %s: the recording %s cannot be copied to %s: %w%s", path, name, target, plain(err), d.safe(now))
+			}
+			made = append(made, target)
 		}
-		if err := copyTo(target, data); err != nil {
-			return made, fmt.Errorf("save %s: the recording %s cannot be copied to %s: %w%s", path, s.File, target, plain(err), d.safe(now))
-		}
-		made = append(made, target)
 	}
 	return made, nil
 }

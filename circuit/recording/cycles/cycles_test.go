@@ -176,3 +176,37 @@ func TestPeriodOfNoiseAndSine(t *testing.T) {
 		t.Error("nothing that moves")
 	}
 }
+
+// A day or more at full rate: cycles of 20 s at 100 Hz, 10 million rows.
+func BenchmarkFind(b *testing.B) {
+	p := longPlant(10_000_000)
+	for b.Loop() {
+		r, err := Find(p, Options{})
+		if err != nil || len(r.Cycles) < 4900 {
+			b.Fatal(err, len(r.Cycles))
+		}
+	}
+}
+
+// longPlant repeats a cycle of 20 s, of which every seventh takes half as much again.
+func longPlant(rows int) Input {
+	in := Input{T: make([]float64, rows), Motion: [][]float64{make([]float64, rows)}, Level: [][]float64{make([]float64, rows)}, Power: make([]float64, rows)}
+	r := rand.New(rand.NewSource(7))
+	for i := range rows {
+		in.T[i] = 0.01 * float64(i)
+		u, k := math.Mod(in.T[i], 20)/20, int(in.T[i]/20)
+		v, pr := 0.0, 100.0
+		switch {
+		case u < 0.3:
+			v = 0.1 * math.Sin(math.Pi*u/0.3)
+		case u >= 0.5 && u < 0.8:
+			v, pr = -0.1*math.Sin(math.Pi*(u-0.5)/0.3), 40
+		}
+		if k%7 == 3 {
+			pr *= 1.5
+		}
+		in.Motion[0][i], in.Level[0][i] = v*(1+0.02*r.NormFloat64()), pr*(1+0.02*r.NormFloat64())
+		in.Power[i] = math.Max(0, v) * pr * 1e3
+	}
+	return in
+}

@@ -66,6 +66,10 @@ func (s *stamps) read(a, b []byte) (ns int64, x float64, decimals int, ok bool) 
 }
 
 func (s *stamps) dated(a, b []byte) (int64, bool) {
+	if day, ns, ok := compact(a); ok {
+		s.day, s.hasDay = day, true
+		return day*dayNS + ns, true
+	}
 	if len(s.Columns) == 2 && len(a) == 0 && s.hasDay {
 		a, b = b, nil
 	}
@@ -109,40 +113,82 @@ func digits(b []byte, max int) (v, n int) {
 	return
 }
 
-// clock reads h:mm[:ss[.fff]] with or without AM or PM, in ns after midnight.
+// compact reads a stamp of figures only, yyyymmddhhmmss[.fff], with a T or a blank between
+// date and clock or without; other numbers of so many figures are no valid dates.
+func compact(b []byte) (day, ns int64, ok bool) {
+	y, n := digits(b, 4)
+	if n != 4 || y < 1970 || y > 2100 || len(b) < 14 {
+		return 0, 0, false
+	}
+	rest := b[8:]
+	if rest[0] == 'T' || rest[0] == ' ' || rest[0] == '_' {
+		rest = rest[1:]
+	}
+	var v [5]int
+	for k, from := range [][]byte{b[4:6], b[6:8], rest[:2], rest[2:4], rest[4:min(6, len(rest))]} {
+		if v[k], n = digits(from, 2); n != 2 {
+			return 0, 0, false
+		}
+	}
+	at := time.Date(y, time.Month(v[0]), v[1], v[2], v[3], v[4], 0, time.UTC)
+	if int(at.Month()) != v[0] || at.Day() != v[1] || at.Hour() != v[2] || at.Minute() != v[3] || at.Second() != v[4] {
+		return 0, 0, false
+	}
+	frac, left := fraction(rest[6:])
+	if len(left) > 0 {
+		return 0, 0, false
+	}
+	s := at.Unix()
+	return s / 86400, s%86400*1e9 + frac, true
+}
+
+// fraction reads .fff or ,fff in ns.
+func fraction(b []byte) (ns int64, rest []byte) {
+	if len(b) < 2 || b[0] != '.' && b[0] != ',' && b[0] != ':' {
+		return 0, b
+	}
+	f, n := digits(b[1:], 9)
+	if n == 0 {
+		return 0, b
+	}
+	ns = int64(f)
+	for k := n; k < 9; k++ {
+		ns *= 10
+	}
+	for b = b[1+n:]; len(b) > 0 && b[0] >= '0' && b[0] <= '9'; {
+		b = b[1:]
+	}
+	return ns, b
+}
+
+// clock reads h:mm[:ss[.fff]] with or without AM or PM, mm:ss.fff, or h.mm.ss[,fff], in ns after midnight.
 func clock(b []byte) (ns int64, rest []byte, ok bool) {
 	h, n := digits(b, 3)
-	if n == 0 || n == len(b) || b[n] != ':' {
+	if n == 0 || len(b) < n+3 || b[n] != ':' && !(b[n] == '.' && len(b) >= n+6 && b[n+3] == '.') {
 		return 0, b, false
 	}
+	colon := b[n]
 	b = b[n+1:]
 	m, n := digits(b, 2)
 	if n != 2 || m > 59 {
 		return 0, b, false
 	}
 	b = b[n:]
+	if colon == ':' && len(b) > 0 && b[0] != ':' { // no hours: a fraction is one of seconds
+		if f, left := fraction(b); len(left) < len(b) {
+			return int64(h)*60e9 + int64(m)*1e9 + f, left, true
+		}
+	}
 	ns = int64(h)*3600e9 + int64(m)*60e9
-	if len(b) > 2 && b[0] == ':' {
+	if len(b) > 2 && b[0] == colon {
 		sec, n := digits(b[1:], 2)
 		if n != 2 || sec > 60 {
 			return 0, b, false
 		}
 		ns += int64(sec) * 1e9
-		b = b[3:]
-		if len(b) > 1 && (b[0] == '.' || b[0] == ',' || b[0] == ':') {
-			f, n := digits(b[1:], 9)
-			if n > 0 {
-				frac := int64(f)
-				for k := n; k < 9; k++ {
-					frac *= 10
-				}
-				ns += frac
-				b = b[1+n:]
-				for len(b) > 0 && b[0] >= '0' && b[0] <= '9' {
-					b = b[1:]
-				}
-			}
-		}
+		var frac int64
+		frac, b = fraction(b[3:])
+		ns += frac
 	}
 	half := trim(b)
 	if len(half) >= 2 && h >= 1 && h <= 12 {
@@ -254,6 +300,9 @@ func date(b []byte, order string) (day int64, rest []byte, ok bool) {
 
 // isStamp reports whether a cell is a date, a clock, or both.
 func isStamp(cell []byte) (dated, clocked bool) {
+	if _, _, ok := compact(cell); ok {
+		return true, true
+	}
 	rest := cell
 	for _, order := range []string{"dmy", "mdy", "ymd"} {
 		if _, r, ok := date(cell, order); ok {

@@ -17,7 +17,7 @@ type sample struct {
 const sampleLines = 3000
 
 func (f *File) sample(encoding string) sample {
-	s := sample{whole: f.Size <= headBytes}
+	s := sample{whole: f.whole()}
 	for l := newLines(bytes.NewReader(text(f.head, encoding))); len(s.lines) < sampleLines; {
 		line := l.next()
 		if line == nil {
@@ -25,7 +25,7 @@ func (f *File) sample(encoding string) sample {
 		}
 		s.lines = append(s.lines, bytes.Clone(line))
 	}
-	if !s.whole && len(s.lines) > 1 && len(s.lines) < sampleLines {
+	if len(f.head) == headBytes && len(s.lines) > 1 && len(s.lines) < sampleLines {
 		s.lines = s.lines[:len(s.lines)-1] // cut in its middle
 	}
 	return s
@@ -72,10 +72,11 @@ type guesser struct {
 
 // shape is what a line is, cut in one way.
 type shape struct {
-	cells, good, solid int // good: a number, a stamp or nothing; solid: not nothing
+	all, cells, good, solid int // cells: up to the last with something in it; good: a number, a stamp or nothing; solid: not nothing
 }
 
 func shapeOf(cells [][]byte) (s shape) {
+	s.all = len(cells)
 	for len(cells) > 0 && len(cells[len(cells)-1]) == 0 {
 		cells = cells[:len(cells)-1] // a separator at the end
 	}
@@ -142,21 +143,23 @@ func (g *guesser) separators() bool {
 }
 
 func (g *guesser) score(s splitter) (score float64, width int) {
-	count := map[int]int{}
+	count, filled := map[int]int{}, map[int]int{} // by how many separators a row has: rows, and cells in the fullest of them
 	shapes := make([]shape, len(g.lines))
 	for i, line := range g.lines {
 		if shapes[i] = shapeOf(s.split(line, nil)); shapes[i].row() {
-			count[shapes[i].cells]++
+			count[shapes[i].all]++
+			filled[shapes[i].all] = max(filled[shapes[i].all], shapes[i].cells)
 		}
 	}
-	rows := 0
+	rows, all := 0, 0
 	for n, k := range count {
-		if k > rows || k == rows && n > width {
-			rows, width = k, n
+		if k > rows || k == rows && n > all {
+			rows, all = k, n
 		}
 	}
+	width = filled[all]
 	for _, sh := range shapes {
-		if sh.row() && sh.cells >= width/2 && sh.cells <= width {
+		if sh.row() && sh.all >= width/2 && sh.cells <= width {
 			share := float64(sh.good) / float64(sh.cells)
 			score += share * share
 		}
@@ -168,13 +171,15 @@ func (g *guesser) score(s splitter) (score float64, width int) {
 // where rows of words have unequal numbers of them or the head has more words than columns.
 func (g *guesser) fixed() {
 	s := splitter{}
-	var rows [][]byte
+	var rows, whole [][]byte // whole: nothing but numbers
 	counts := map[int]int{}
 	head := 0
 	for _, line := range g.lines {
 		cells := s.split(line, nil)
-		if shapeOf(cells).row() {
-			rows = append(rows, line)
+		if sh := shapeOf(cells); sh.row() {
+			if rows = append(rows, line); sh.good == sh.cells {
+				whole = append(whole, line)
+			}
 			counts[len(cells)]++
 		} else if len(rows) == 0 && len(cells) > 0 {
 			head = len(cells)
@@ -182,6 +187,9 @@ func (g *guesser) fixed() {
 	}
 	if len(counts) == 1 && (head == 0 || counts[head] > 0) {
 		return
+	}
+	if 2*len(whole) > len(rows) { // a line above them may look like a row
+		rows = whole
 	}
 	widths := blankColumns(rows)
 	if len(widths) < 2 {
@@ -232,7 +240,7 @@ func (g *guesser) heads() {
 	for i, line := range g.lines {
 		cells := g.split.split(line, nil)
 		sh := shapeOf(cells)
-		if !sh.row() || sh.cells*2 < n || sh.good*2 < n && sh.cells == n || g.unitLike(cells) {
+		if !sh.row() || sh.all*2 < n || sh.all < n && sh.good < sh.cells || sh.good*2 < n && sh.cells == n || g.unitLike(cells) {
 			continue
 		}
 		next, of := 0, 0
@@ -241,7 +249,7 @@ func (g *guesser) heads() {
 				continue
 			}
 			of++
-			if s := shapeOf(g.split.split(g.lines[k], nil)); s.row() && s.cells*2 >= n {
+			if s := shapeOf(g.split.split(g.lines[k], nil)); s.row() && s.all*2 >= n {
 				next++
 			}
 		}
@@ -255,6 +263,7 @@ func (g *guesser) heads() {
 	}
 	above := []int{}
 	for i := g.First - 2; i >= 0 && len(above) < 3; i-- {
+		i = headStart(g.lines, i)
 		line := bytes.TrimLeft(g.lines[i], "#%/ ")
 		cells := g.cellsOf(i + 1)
 		for len(cells) > n && len(cells[len(cells)-1]) == 0 {
@@ -284,8 +293,39 @@ func (g *guesser) heads() {
 }
 
 func (g *guesser) cellsOf(line int) [][]byte {
-	return g.split.head(g.lines[line-1])
+	return g.split.head(headText(g.lines, line-1))
 }
+
+// headStart returns the line in which a head begins that ends in line i, for a cell between quotes may go over several.
+func headStart(lines [][]byte, i int) int {
+	if quotes(lines[i])%2 == 0 {
+		return i
+	}
+	for k := i - 1; k >= max(0, i-40); k-- {
+		if n := quotes(lines[k]); n%2 == 1 && headEnd(lines, k) == i {
+			return k
+		}
+	}
+	return i
+}
+
+// headEnd returns the line in which the quotes are closed that line i leaves open; i where none does.
+func headEnd(lines [][]byte, i int) int {
+	open := false
+	for k := i; k < min(len(lines), i+40); k++ {
+		if open = open != (quotes(lines[k])%2 == 1); !open {
+			return k
+		}
+	}
+	return i
+}
+
+// headText returns a head as one line.
+func headText(lines [][]byte, i int) []byte {
+	return bytes.Join(lines[i:headEnd(lines, i)+1], []byte(" "))
+}
+
+func quotes(line []byte) int { return bytes.Count(line, []byte{'"'}) }
 
 // words counts the cells that are neither numbers nor empty.
 func words(cells [][]byte) (n int) {
@@ -320,7 +360,7 @@ func (r *Recipe) header(lines [][]byte, width int) (names, units []string) {
 		if line < 1 || line > len(lines) {
 			return nil
 		}
-		return split.head(lines[line-1])
+		return split.head(headText(lines, line-1))
 	}
 	head, row := cells(r.Head), cells(r.UnitsRow)
 	for len(head) > width && len(head[len(head)-1]) == 0 {
@@ -347,7 +387,7 @@ func (r *Recipe) header(lines [][]byte, width int) (names, units []string) {
 
 // heading reads the lines up to the first row.
 func (f *File) heading(r *Recipe) (lines [][]byte, err error) {
-	in, err := f.open()
+	in, err := f.parts[0].open()
 	if err != nil {
 		return nil, err
 	}

@@ -2,6 +2,7 @@ package logger
 
 import (
 	"bytes"
+	"fmt"
 	"regexp"
 	"strings"
 
@@ -47,6 +48,51 @@ func (g *guesser) columns() {
 		}
 		g.quantity(&c, preamble)
 		g.Channels = append(g.Channels, c)
+		g.signal(n, i, c)
+	}
+	g.sameNames()
+}
+
+// signal asks what a signal of 4 to 20 mA means where nothing says it.
+func (g *guesser) signal(n *numbers, i int, c Channel) {
+	if c.Quantity != units.Current.Name() || c.Unit != "mA" || c.Scaling != nil || c.Kind != "" || c.Text {
+		return
+	}
+	in, all := 0, 0
+	for _, x := range g.values(n, i) {
+		if x == x {
+			if all++; x >= faultLow && x <= faultHigh {
+				in++
+			}
+		}
+	}
+	if all > 0 && 10*in >= 9*all {
+		g.ask(c.Column+scalingField, fmt.Sprintf("%s is a signal of 4 to 20 mA and nothing says what it means; say what its ends are, as in \"0 to 250 bar\", or \"mA\" to keep it as a current", c.Column))
+	}
+}
+
+// sameNames asks where two channels of one quantity have one name in the head.
+func (g *guesser) sameNames() {
+	if g.Head == 0 {
+		return
+	}
+	first := map[string]int{}
+	for i, cell := range g.cellsOf(g.Head) {
+		name, _ := nameAndUnit(string(cell))
+		if i >= len(g.names) || name == "" {
+			continue
+		}
+		k, twice := first[name]
+		if !twice {
+			first[name] = i
+			continue
+		}
+		a, b := g.Channel(g.names[k]), g.Channel(g.names[i])
+		if a == nil || b == nil || a.Text || b.Text || a.Quantity != b.Quantity {
+			continue
+		}
+		g.ask("names", fmt.Sprintf("columns %d and %d are both named %q; they are read as %q and %q, in their order: make sure which is which, and say so", k+1, i+1, name, a.Column, b.Column), "in their order")
+		return
 	}
 }
 

@@ -37,7 +37,7 @@ func (g *guesser) times() {
 			both = i
 		case dateCol < 0 && d > k:
 			dateCol = i
-		case clockCol < 0 && k > 0:
+		case clockCol < 0 && (k > 0 || dateCol >= 0): // a clock with dots looks like a date
 			clockCol = i
 		}
 	}
@@ -152,7 +152,7 @@ func (g *guesser) numeric(n *numbers) {
 		if g.Head == 0 && i == 0 {
 			s += 2
 		}
-		if s == 0 && i == 0 && !known && len(v) > 0 && (epochLike(v) || evenly(v)) {
+		if s == 0 && i == 0 && !known && len(v) > 0 && (epochLike(v) || evenly(v) || serialLike(v)) {
 			s = 1
 		}
 		if s == 0 || up < 5*down || up == 0 {
@@ -213,11 +213,24 @@ func evenly(v []float64) bool {
 	}
 	h := v[1] - v[0]
 	for i := 1; i < len(v); i++ {
-		if !(math.Abs(v[i]-v[i-1]-h) <= 1e-6*h) {
+		if !(math.Abs(v[i]-v[i-1]-h) <= 1e-3*h) { // stamps are rounded
 			return false
 		}
 	}
 	return h > 0
+}
+
+// serialLike reports whether a column holds days as spreadsheets count them, of a few months, always rising.
+func serialLike(v []float64) bool {
+	if first, last := v[0], v[len(v)-1]; !(first > 20000 && last < 80000 && last-first < 400) || whole(v) {
+		return false
+	}
+	for i := 1; i < len(v); i++ {
+		if !(v[i] > v[i-1]) {
+			return false
+		}
+	}
+	return true
 }
 
 func whole(v []float64) bool {
@@ -268,6 +281,10 @@ func (g *guesser) order(column int) {
 	for _, cells := range g.rows {
 		if column >= len(cells) {
 			continue
+		}
+		if _, _, ok := compact(cells[column]); ok {
+			g.Time.Order = "ymd"
+			return
 		}
 		v, width, named, _, ok := fields(cells[column])
 		if !ok {

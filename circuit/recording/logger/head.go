@@ -67,7 +67,7 @@ func readUnit(text string) (unitIn, bool) {
 			return unitIn{u, true}, true
 		}
 	}
-	for _, end := range []string{"(g)", "(g", " g", "g", "(rel)", " rel"} {
+	for _, end := range []string{"(g)", "(g", " g", "g", "(rel)", " rel", "(ü)", "(ü", " ü", "ü"} {
 		if base, ok := strings.CutSuffix(low, end); ok && base != "" {
 			if u, ok := units.Find(strings.TrimSpace(base), units.Pressure); ok {
 				return unitIn{u, false}, true
@@ -129,8 +129,8 @@ var (
 	}{{Minimum, regexp.MustCompile(`(?i)(^|[^a-z])min(imum|\.)?($|[^a-z])`)}, {Maximum, regexp.MustCompile(`(?i)(^|[^a-z])(max(imum|\.)?|peak)($|[^a-z])`)},
 		{Mean, regexp.MustCompile(`(?i)(^|[^a-z])(mean|avg|average|mittel(wert)?)($|[^a-z])`)}}
 	counterWords = regexp.MustCompile(`(?i)^(#|no\.?|nr\.?|n|id|idx|index|rec(ord)?( ?(no|nr)\.?)?|count(er)?|sample( ?(no|nr)\.?)?|scan|row|line|zeile|seq)$`)
-	timeWords    = regexp.MustCompile(`(?i)^(t|time|zeit|temps|tiempo|date|datum|fecha|clock|uhrzeit|timestamp|stamp|elapsed|epoch|unix)($|[^a-z])|time($|[^a-z])|date`)
-	spanText     = regexp.MustCompile(`(?i)(4|0)\s*(?:-|–|\.\.\.?|to|bis)\s*(20|10)\s*(mA|V)\s*(?:=|->|→|:|is|for|für)+\s*(-?[\d.,]+)\s*(?:-|–|\.\.\.?|to|bis)\s*(-?[\d.,]+)\s*([^\s;,\])]+)`)
+	timeWords    = regexp.MustCompile(`(?i)^(t|time|zeit|zeitstempel|uhrzeit|temps|heure|horodatage|tiempo|hora|tempo|ora|tid|tijd|czas|čas|aika|date|datum|fecha|clock|timestamp|stamp|elapsed|epoch|unix)($|[^a-z])|time($|[^a-z])|date`)
+	spanText     = regexp.MustCompile(`(?i)(4|0)\s*(?:-|–|\.\.\.?|to|bis)\s*(20|10)\s*(mA|V)\s*(?:=|->|→|:|is|for|für)+\s*([-+]?[\d.,]+)\s*(?:-|–|\.\.\.?|to|bis)\s*([-+]?[\d.,]+)\s*([^\s;,\])]+)`)
 )
 
 func kindOf(name string) Kind {

@@ -9,11 +9,13 @@ import (
 	"hash"
 	"io"
 	"sort"
+
+	"barlitre/machines/units"
 )
 
 // Recording is what an import makes of a file.
 type Recording struct {
-	Name, SHA256 string // of the file as it was read
+	Name, SHA256 string // of the file as it was read; of all, one after another, where several are joined
 	Recipe       Recipe
 	Lines        int       // of the file
 	Time         []float64 // s, rising
@@ -29,6 +31,7 @@ type Mark struct {
 	T    float64 // s
 	Line int
 	Text string
+	File string // that Line is of, where several are joined
 }
 
 // maxMarks bounds the marks kept; more are counted.
@@ -49,6 +52,8 @@ type importer struct {
 	*Recording
 	f      *File
 	names  []string
+	units  []string // of the columns, as the head has them
+	fault  error    // what ends the import
 	split  splitter
 	n      *numbers
 	stamps stamps
@@ -59,10 +64,13 @@ type importer struct {
 	by                      []*Series // by column
 	raw                     column    // time stamps, s
 	count                   column
+	last                    float64 // s, of the last row, and where a counter began
+	count0                  float64
 	ns0                     int64
 	x0                      float64
 	begun                   bool
 
+	parts    []begun
 	steps    []step // where rows stop following line by line
 	rows     int
 	line     int
@@ -84,8 +92,8 @@ type rowMark struct {
 // Import reads the whole file. progress, which may be nil, is told how many bytes of the
 // file are done, a few times a second at most speed. A cancelled context ends it.
 func (f *File) Import(ctx context.Context, r Recipe, progress func(done, total int64)) (*Recording, error) {
-	if len(r.Questions) > 0 {
-		return nil, fmt.Errorf("%s: %s", f.Name, r.Questions[0].Text)
+	if q := r.Open(); len(q) > 0 {
+		return nil, fmt.Errorf("%s: %s", f.Name, q[0].Text)
 	}
 	if err := r.check(); err != nil {
 		return nil, fmt.Errorf("%s: %w", f.Name, err)
@@ -94,15 +102,12 @@ func (f *File) Import(ctx context.Context, r Recipe, progress func(done, total i
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", f.Name, err)
 	}
-	in, err := f.open()
-	if err != nil {
-		return nil, err
-	}
-	defer in.Close()
 	sum := sha256.New()
-	src := &watched{in: in, sum: sum, ctx: ctx, total: f.Size, progress: progress}
-	if err := im.stream(src); err != nil {
-		return nil, fmt.Errorf("%s: %w", f.Name, err)
+	src := &watched{sum: sum, ctx: ctx, total: f.Size, progress: progress}
+	for _, p := range f.parts {
+		if err := im.part(p, src); err != nil {
+			return nil, fmt.Errorf("%s: %w", p.name, err)
+		}
 	}
 	im.SHA256 = hex.EncodeToString(sum.Sum(nil))
 	if im.rows == 0 {
@@ -169,6 +174,14 @@ func (r *Recipe) check() error {
 	if r.Separator == "fixed" && !sort.IntsAreSorted(r.Widths) || r.Separator == "fixed" && (len(r.Widths) < 2 || r.Widths[0] < 0) {
 		return fmt.Errorf("a file of fixed width needs widths, rising, where its columns begin")
 	}
+	if !(r.Air == 0 || r.Air > 0.3*units.Bar && r.Air < 1.2*units.Bar) {
+		return fmt.Errorf("the pressure of the air is %g Pa, must lie between 30000 and 120000", r.Air)
+	}
+	for _, p := range r.Time.Pauses {
+		if !(p > 0 && p < 1e9) {
+			return fmt.Errorf("a pause is %g s, must be above 0", p)
+		}
+	}
 	switch t := r.Time; {
 	case t.Form == Spaced && !(t.Interval > 0 && t.Interval < 1e9):
 		return fmt.Errorf("rows without stamps need interval_s, above 0")
@@ -198,7 +211,7 @@ func (f *File) importer(r Recipe) (*importer, error) {
 			width = max(width, len(trimmed(im.split.split(line, nil))))
 		}
 	}
-	im.names, _ = r.header(lines, width)
+	im.names, im.units = r.header(lines, width)
 	find := func(name string) (int, error) {
 		for i, n := range im.names {
 			if n == name {
@@ -261,7 +274,19 @@ func (f *File) importer(r Recipe) (*importer, error) {
 	return im, nil
 }
 
-// stream reads all lines.
+// part reads one of the files of a recording.
+func (im *importer) part(p part, src *watched) error {
+	in, err := p.open()
+	if err != nil {
+		return err
+	}
+	defer in.Close()
+	src.in = in
+	im.begin()
+	return im.stream(src)
+}
+
+// stream reads all lines of a part.
 func (im *importer) stream(src io.Reader) error {
 	l := newLines(decoded(src, im.Recipe.Encoding))
 	for {
@@ -269,15 +294,17 @@ func (im *importer) stream(src io.Reader) error {
 		if line == nil {
 			break
 		}
-		if im.line = l.n; im.line < im.Recipe.First {
+		if im.line = im.Lines + l.n; im.line < im.Recipe.First {
 			continue
 		}
 		im.cells = im.split.split(line, im.cells[:0])
 		if !im.row() {
-			im.other(line)
+			if im.other(line); im.fault != nil {
+				return im.fault
+			}
 		}
 	}
-	im.Lines = l.n
+	im.Lines += l.n
 	if l.err != nil && l.err != io.EOF {
 		if l.err == io.ErrShortBuffer {
 			return fmt.Errorf("line %d is longer than %d MB; this is no table", l.n+1, maxLine>>20)

@@ -23,8 +23,8 @@ func (im *importer) row() bool {
 		if !im.numeric() {
 			return false
 		}
-		x = float64(im.rows) * im.Recipe.Time.Interval
-		decimals = -1
+		x, decimals = im.counted(), -1
+		im.last = x
 	} else {
 		a, b := im.cell(im.timeA), im.cell(im.timeB)
 		if len(a) == 0 && len(b) == 0 {
@@ -58,6 +58,25 @@ func (im *importer) row() bool {
 	im.lengths()
 	im.rows++
 	return true
+}
+
+// counted is the time of a row without a stamp: by the counter of records where there is one,
+// for then a lost row leaves its gap, else by the rows so far.
+func (im *importer) counted() float64 {
+	h := im.Recipe.Time.Interval
+	if im.counterAt < 0 {
+		return float64(im.rows) * h
+	}
+	switch c, _, _, ok := im.n.parse(im.cell(im.counterAt)); {
+	case !im.begun:
+		if im.count0 = c; !ok {
+			im.count0 = 1
+		}
+		return 0
+	case ok && math.Abs((c-im.count0)*h) < longest:
+		return (c - im.count0) * h
+	}
+	return im.last + h
 }
 
 // since turns a stamp into seconds: as they stand where they are elapsed, from the first row on otherwise.
@@ -97,12 +116,12 @@ func (im *importer) since(ns int64, v float64, d int) (float64, int) {
 func (im *importer) start(ns int64, v float64) {
 	switch im.Recipe.Time.Form {
 	case Dated:
-		im.Start = time.Unix(0, ns).UTC().Format("2006-01-02 15:04:05.999")
+		im.Start = time.Unix(0, ns).UTC().Format(startForm)
 	case Clock:
 		im.Start = time.Unix(0, ns).UTC().Format("15:04:05.999")
 	case Epoch:
 		s := im.stamps.seconds(v)
-		im.Start = time.Unix(0, 0).Add(time.Duration(s * 1e9)).UTC().Format("2006-01-02 15:04:05.999")
+		im.Start = time.Unix(0, 0).Add(time.Duration(s * 1e9)).UTC().Format(startForm)
 	case Serial: // day 25569 is 1 January 1970
 		im.Start = time.Unix(int64(math.Round((v-25569)*units.Day)), 0).UTC().Format("2006-01-02 15:04:05")
 	}

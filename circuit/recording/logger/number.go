@@ -38,7 +38,16 @@ func (n *numbers) parse(cell []byte) (x float64, decimals int, rest []byte, ok b
 		return
 	}
 	if plain, changed := n.plain(cell); changed {
-		return n.fast(plain)
+		cell = plain
+		x, decimals, rest, ok = n.fast(cell)
+	}
+	switch last := len(cell) - 1; {
+	case ok && len(rest) == 1 && rest[0] == '-' && cell[0] >= '0' && cell[0] <= '9': // a minus may stand behind
+		return -x, decimals, nil, true
+	case !ok && last > 1 && cell[0] == '(' && cell[last] == ')': // book-keepers put what is below zero between brackets
+		if x, d, rest, ok := n.fast(cell[1:last]); ok && len(rest) == 0 && cell[1] >= '0' && cell[1] <= '9' {
+			return -x, d, nil, true
+		}
 	}
 	return
 }

@@ -35,6 +35,7 @@ func shortened(b []byte) string {
 // others are the lines that are no rows, and rows that are not whole.
 type others struct {
 	heads, comments, unread, long, short seen
+	further, footers                     seen   // above the rows of further files, below those of files that another follows
 	tail                                 []seen // unread lines after the last row, so far
 	tailRow                              int
 	tailCount                            int
@@ -54,9 +55,39 @@ func (im *importer) other(line []byte) {
 		} else {
 			im.moreMark++
 		}
+	case im.otherHead(line):
+		o.heads.with(im.line, b)
+	case im.further():
+		o.further.with(im.line, b)
 	default:
 		im.leftOver(b)
 	}
+}
+
+// otherHead reports whether a line names the columns again. Where it names them otherwise,
+// the import ends, for rows would be read under names or units that are not theirs.
+func (im *importer) otherHead(line []byte) bool {
+	named, same, all := 0, 0, 0
+	for i, c := range im.split.head(line) {
+		if len(c) == 0 {
+			continue
+		}
+		all++
+		name, unit := nameAndUnit(string(c))
+		if contains(im.names, name) {
+			named++
+		}
+		if i < len(im.names) && im.names[i] == name && (unit == "" || im.units[i] == "" || im.units[i] == unit) {
+			same++
+		}
+	}
+	if named < 2 || 2*named < all {
+		return false
+	}
+	if same < all && im.fault == nil {
+		im.fault = fmt.Errorf("line %d names the columns otherwise than line %d: %q; cut the file there and import the parts one by one", im.line, im.Recipe.Head, shortened(line))
+	}
+	return true
 }
 
 // leftOver keeps lines that may be a footer until a row follows.
@@ -70,6 +101,18 @@ func (im *importer) leftOver(b []byte) {
 		var s seen
 		s.with(im.line, b)
 		o.tail = append(o.tail, s)
+	}
+}
+
+// ends takes lines after the last row of a part for its footer.
+func (o *others) ends(rows int) {
+	if o.tailRow == rows && o.tailCount > 0 {
+		if o.footers.count == 0 {
+			o.footers = o.tail[0]
+			o.footers.count = 0
+		}
+		o.footers.count += o.tailCount
+		o.tail, o.tailCount = nil, 0
 	}
 }
 
@@ -97,9 +140,9 @@ func (im *importer) otherLines() {
 	say("repeated heads", o.heads, false, "like those above the first row, such as %q", "passed over")
 	say("comments", o.comments, false, "that begin as comments, such as %q", "kept as marks")
 	say("lines that are no rows", o.unread, true, "between the rows have no time stamp or no numbers, such as %q", "left out")
-	if o.tailCount > 0 {
-		say("footer", seen{o.tailCount, o.tail[0].first, o.tail[0].example}, false, "after the last row, such as %q", "left out")
-	}
+	o.ends(im.rows)
+	say("footer", o.footers, false, "after the last row, such as %q", "left out")
+	say("further heads", o.further, false, "above the first row of further files, such as %q", "passed over")
 	if o.long.count > 0 {
 		im.Corrections = append(im.Corrections, Correction{Key: "long rows", Count: o.long.count, Line: o.long.first, Warns: true,
 			Text: fmt.Sprintf("%s more cells than the head names columns", rowsHave(o.long.count)), Done: "what is beyond is left out"})

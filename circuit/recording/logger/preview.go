@@ -47,7 +47,7 @@ func (f *File) Preview(r Recipe, n int) (*Preview, error) {
 			last = last[1:]
 		}
 	}
-	known := f.Size <= headBytes
+	known := f.whole()
 	for i, line := range last {
 		at := 0
 		if known {
@@ -60,7 +60,7 @@ func (f *File) Preview(r Recipe, n int) (*Preview, error) {
 
 // evenTail is the tail from an even place of the file, where signs of two bytes begin.
 func (f *File) evenTail() []byte {
-	if f.Size > headBytes && f.Size%2 == 1 && len(f.tail) > 0 {
+	if size := f.parts[len(f.parts)-1].size; size > headBytes && size%2 == 1 && len(f.tail) > 0 {
 		return f.tail[1:]
 	}
 	return f.tail

@@ -31,7 +31,7 @@ func (im *importer) finish(ctx context.Context) error {
 		if k < 0 {
 			k = min(m.row, len(im.Time)-1)
 		}
-		im.Marks = append(im.Marks, Mark{im.Time[k], m.line, m.text})
+		im.Marks = append(im.Marks, Mark{T: im.Time[k], Line: m.line, Text: m.text})
 	}
 	buf := make([]float64, len(im.Time))
 	kept := im.Series[:0]
@@ -47,13 +47,15 @@ func (im *importer) finish(ctx context.Context) error {
 	}
 	im.Series = kept
 	im.across()
+	im.place()
 	return nil
 }
 
 // limits tells of files that end where a spreadsheet ends.
 func (im *importer) limits() {
 	for _, n := range []int{65536, 1048576} {
-		if im.Lines == n || im.rows == n {
+		last := im.parts[len(im.parts)-1] // a file that another one follows was split there
+		if im.Lines-last.line == n || im.rows-last.row == n {
 			im.Corrections = append(im.Corrections, Correction{Key: "cut", Count: 1, Line: im.Lines, Warns: true,
 				Text: fmt.Sprintf("the file has exactly %d rows, the most that some spreadsheets hold; what came after is probably lost", n)})
 		}
@@ -66,6 +68,7 @@ type inspector struct {
 	s      *Series
 	v      []float64 // SI, NaN where there is no value
 	sorted []float64 // a sample
+	least  float64   // step, see quantum; 0 = not known yet
 	equal  float64   // share of neighbours that are equal
 }
 
@@ -84,6 +87,7 @@ func (q *inspector) inspect() bool {
 	q.loop()
 	q.counter()
 	s.si(q.v)
+	q.fillers()
 	q.sampled()
 	q.cells()
 	if len(q.sorted) == 0 {

@@ -22,6 +22,40 @@ const (
 	clippedRows = 3
 )
 
+// fillers are numbers that loggers write where they have no value; common practice, no source.
+var fillers = []float64{999, 999.9, 999.99, 9999, 9999.9, 9999.99, 99999, 999999, 32767, 32768, 65535}
+
+// fillers looks for such a number that is more than three times as large as all other values.
+func (q *inspector) fillers() {
+	s := q.s
+	var rows []int
+	at, rest := 0.0, 0.0
+	for i := range q.v {
+		switch x := s.raw.at(q.row(i)); {
+		case at == 0 && slices.Contains(fillers, math.Abs(x)):
+			at, rows = x, append(rows, i)
+		case at != 0 && x == at:
+			rows = append(rows, i)
+		case x == x:
+			rest = math.Max(rest, math.Abs(x))
+		}
+	}
+	if len(rows) == 0 || 2*len(rows) > len(q.v) || rest == 0 || 3*rest > math.Abs(at) || s.Counter || s.Scaling != nil {
+		return
+	}
+	choice := q.pick("filler", "remove", "leave")
+	c := q.where(Correction{Key: "filler", Count: len(rows), Warns: true, Choice: choice, Choices: []string{"remove", "leave"},
+		Text: fmt.Sprintf("%s %g, which loggers write for no value; all others are below %.4g", rowsHave(len(rows)), at, rest)}, rows[0])
+	if choice == "remove" {
+		c.Done = "taken as straight lines between the values around"
+		s.removed = append(s.removed, rows...)
+		for _, i := range rows {
+			q.v[i] = math.NaN()
+		}
+	}
+	q.say(c)
+}
+
 // spikes looks for rows that stand alone, far from those around.
 func (q *inspector) spikes() {
 	if len(q.v) < 20 {
@@ -115,8 +149,14 @@ func (q *inspector) pressure() {
 			c.Text, c.Warns = fmt.Sprintf("rests at %s, as a pressure against vacuum does; say which it is", q.shown(rest)), gauge == "leave"
 		}
 		if gauge == "gauge" {
-			s.shift -= units.AtmosphericPressure
+			air := q.Recipe.Air
 			c.Done = "the standard atmosphere of 1.01325 bar is taken off"
+			if air == 0 {
+				air = units.AtmosphericPressure
+			} else {
+				c.Done = fmt.Sprintf("the pressure of the air, stated as %.6g bar, is taken off", air/units.Bar)
+			}
+			s.shift -= air
 		}
 		q.say(c)
 	case rest < -restBar && rest > -3*units.Bar && width < math.Max(0.3*-rest, restBar) && top-rest > 5*units.Bar:
@@ -159,7 +199,7 @@ func (q *inspector) clipped() {
 				run++
 				continue
 			}
-			if run >= clippedRows {
+			if run >= clippedRows && q.steep(i-run, i, end.sign) {
 				if rows, runs = rows+run, runs+1; first < 0 {
 					first = i - run
 				}
@@ -167,26 +207,79 @@ func (q *inspector) clipped() {
 			run = 0
 		}
 		pairs := float64(len(q.v) - 1)
-		held := float64(rows - runs) // equal pairs that are those of the stretches themselves
-		if rows == 0 || end.sign*limit == 0 || q.equal*pairs-held > noisyBelow*(pairs-held) {
+		held := float64(rows - runs)                // equal pairs that are those of the stretches themselves
+		long := runs == 1 && rows >= q.stuckLeast() // told by stuck
+		if long || rows == 0 || end.sign*limit == 0 || q.equal*pairs-held > noisyBelow*(pairs-held) {
 			continue
 		}
-		q.say(q.where(Correction{Key: "clipped " + end.name, Count: rows, Warns: true,
-			Text: fmt.Sprintf("%s (%.2g %% of %d) in %s at its %s value %s: the peaks are cut off there", isRows(rows), 100*float64(rows)/float64(len(q.v)), len(q.v), counted(runs, "place"), end.name, q.shown(end.sign*limit))}, first))
+		stroke := q.s.Dim == units.Length || q.s.Dim == units.Angle
+		why := "the peaks are cut off there"
+		if stroke {
+			why = "an end of the stroke, or of what the sensor can tell"
+		}
+		q.say(q.where(Correction{Key: "clipped " + end.name, Count: rows, Warns: !stroke,
+			Text: fmt.Sprintf("%s (%.2g %% of %d) in %s at its %s value %s: %s", isRows(rows), 100*float64(rows)/float64(len(q.v)), len(q.v), counted(runs, "place"), end.name, q.shown(end.sign*limit), why)}, first))
 	}
+}
+
+func (q *inspector) stuckLeast() int {
+	return max(stuckRows, int(stuckShare*float64(len(q.v))))
+}
+
+// again tells of both ends of a channel whether it comes to a stand there more than once, as where peaks are cut off.
+func (q *inspector) again() map[float64]bool {
+	low, high := math.Inf(1), math.Inf(-1)
+	for _, x := range q.v {
+		if x == x {
+			low, high = math.Min(low, x), math.Max(high, x)
+		}
+	}
+	stands := map[float64]int{}
+	for i, x := range q.v {
+		if (x == low || x == high) && i >= clippedRows-1 && q.v[i-1] == x && q.v[i-2] == x && (i == clippedRows-1 || q.v[i-clippedRows] != x) {
+			stands[x]++
+		}
+	}
+	return map[float64]bool{low: stands[low] > 1, high: stands[high] > 1}
+}
+
+// steep reports whether a channel comes to the stand of rows a to b, or leaves it, by more
+// than a few of its smallest steps: a peak that was not cut off is round.
+func (q *inspector) steep(a, b int, sign float64) bool {
+	most := 0.0
+	if a > 0 {
+		most = sign * (q.v[a] - q.v[a-1])
+	}
+	if b < len(q.v) {
+		most = math.Max(most, sign*(q.v[a]-q.v[b]))
+	}
+	return most > 3.5*q.quantum()
+}
+
+// quantum is the smallest step of the channel.
+func (q *inspector) quantum() float64 {
+	if q.least == 0 {
+		q.least = math.Inf(1)
+		for i := 1; i < len(q.v); i++ {
+			if d := math.Abs(q.v[i] - q.v[i-1]); d > 1e-9*math.Abs(q.v[i]) && d < q.least {
+				q.least = d
+			}
+		}
+	}
+	return q.least
 }
 
 // stuck looks for long stretches of one value, of a channel that is alive elsewhere.
 func (q *inspector) stuck() {
-	least := max(stuckRows, int(stuckShare*float64(len(q.v))))
+	least := q.stuckLeast()
 	longest, at, rows, stretches := 0, 0, 0, 0
-	low, high := q.sorted[0], q.sorted[len(q.sorted)-1]
+	again := q.again()
 	for i := 0; i < len(q.v); {
 		k := i + 1
 		for k < len(q.v) && q.v[k] == q.v[i] {
 			k++
 		}
-		if n := k - i; n >= least && q.v[i] != 0 && q.v[i] > low && q.v[i] < high {
+		if n := k - i; n >= least && q.v[i] != 0 && !again[q.v[i]] {
 			rows, stretches = rows+n, stretches+1
 			if n > longest {
 				longest, at = n, i

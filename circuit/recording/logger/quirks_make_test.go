@@ -467,7 +467,7 @@ func TestQuirks(t *testing.T) {
 			}
 		}
 	}
-	if n := folder(t, "testdata/quirks", 1e-9, 1e-5); n != len(quirks) {
+	if n := folder(t, "testdata/quirks", closeness{ofLargest: 1e-9, ofStep: 1e-5}); n != len(quirks) {
 		t.Errorf("%d files, %d quirks", n, len(quirks))
 	}
 }

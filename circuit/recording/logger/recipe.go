@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"slices"
 	"strings"
+
+	"barlitre/machines/units"
 )
 
 // Recipe says how a file is read. Its tags are the keys under which an audit file keeps it.
@@ -17,6 +19,7 @@ type Recipe struct {
 	UnitsRow  int       `yaml:"units_row,omitempty"`   // line with their units; 0 = none
 	First     int       `yaml:"first"`                 // first line of numbers
 	Time      Time      `yaml:"time"`
+	Air       float64   `yaml:"air_pa,omitempty"` // Pa, of the air, which absolute pressures stand above; 0 = the standard atmosphere
 	Channels  []Channel `yaml:"channels"`
 	// Choices answers corrections otherwise than by default, by Correction.Key.
 	Choices map[string]string `yaml:"choices,omitempty"`
@@ -58,8 +61,11 @@ type Time struct {
 	Form     Form     `yaml:"form"`
 	Order    string   `yaml:"order,omitempty"`      // of a date: "ymd", "dmy" or "mdy"
 	Unit     string   `yaml:"unit,omitempty"`       // of elapsed and epoch stamps
-	Interval float64  `yaml:"interval_s,omitempty"` // s, of rows without stamps
+	Interval float64  `yaml:"interval_s,omitempty"` // s, of rows without stamps, or of records where Counter counts them
 	Counter  string   `yaml:"counter,omitempty"`    // column that counts records
+	// Pauses are how long [s] the file pauses at each place where the clock begins anew,
+	// from the last row before to the first after, where somebody knows it.
+	Pauses []float64 `yaml:"pauses_s,omitempty,flow"`
 }
 
 // Channel says what a column holds. Columns that no channel names are left out.
@@ -103,6 +109,40 @@ func (r *Recipe) Channel(column string) *Channel {
 	return nil
 }
 
+// Open returns the questions that neither an answer nor the recipe itself has settled.
+func (r *Recipe) Open() (out []Question) {
+	for _, q := range r.Questions {
+		column, scaled := strings.CutSuffix(q.Field, scalingField)
+		c := r.Channel(column)
+		switch {
+		case scaled && c != nil && (c.Scaling != nil || c.Leave || c.Text || c.Quantity != units.Current.Name()):
+		case q.Field == "interval" && (r.Time.Interval > 0 || r.Time.Form != Spaced):
+		default:
+			out = append(out, q)
+		}
+	}
+	return out
+}
+
+// scalingField ends the field of a question on what a signal means.
+const scalingField = ": scaling"
+
+// scaled answers what a signal of 4 to 20 mA means: its ends as in "0 to 250 bar", or "mA" to keep it as it is.
+func (r *Recipe) scaled(column, choice string) error {
+	c := r.Channel(column)
+	switch k, unit, ok := scalingIn("4-20 mA = " + choice); {
+	case c == nil:
+		return fmt.Errorf("there is no channel %q", column)
+	case choice == "mA":
+	case !ok:
+		return fmt.Errorf("%s: %q is no scaling; write what 4 and 20 mA mean, as in \"0 to 250 bar\", or mA", column, choice)
+	default:
+		to, _ := unitOf(unit)
+		c.Scaling, c.Unit, c.Quantity, c.Absolute = k, to.Symbol, to.Dim.Name(), to.absolute
+	}
+	return nil
+}
+
 // Answer answers a question.
 func (r *Recipe) Answer(field, choice string) error {
 	i := slices.IndexFunc(r.Questions, func(q Question) bool { return q.Field == field })
@@ -112,7 +152,15 @@ func (r *Recipe) Answer(field, choice string) error {
 	if q := r.Questions[i]; len(q.Choices) > 0 && !slices.Contains(q.Choices, choice) {
 		return fmt.Errorf("%s: %q is none of %s", field, choice, strings.Join(q.Choices, ", "))
 	}
+	if column, ok := strings.CutSuffix(field, scalingField); ok {
+		if err := r.scaled(column, choice); err != nil {
+			return err
+		}
+		r.Questions = slices.Delete(r.Questions, i, i+1)
+		return nil
+	}
 	switch field {
+	case "names":
 	case "decimal":
 		r.Decimal, r.Thousands = ".", ","
 		if choice == "," {
@@ -137,6 +185,7 @@ type Correction struct {
 	Channel string   // "" = the rows as a whole
 	Count   int      // rows or cells
 	Line    int      // of the file, of the first; 0 = nowhere in particular
+	File    string   // that Line is of, where several are joined
 	T       float64  // s, of the first
 	Text    string   // what was found, with its numbers
 	Done    string   // what was done; "" = nothing, the data are as they were
@@ -155,6 +204,9 @@ func (c Correction) String() string {
 		s += fmt.Sprintf(", first in line %d", c.Line)
 	} else if c.Line > 0 {
 		s += fmt.Sprintf(", line %d", c.Line)
+	}
+	if c.File != "" {
+		s += " of " + c.File
 	}
 	if c.Done != "" {
 		return s + "; " + c.Done

@@ -3,8 +3,6 @@ package logger
 import (
 	"bytes"
 	"io"
-	"os"
-	"path/filepath"
 	"unicode/utf8"
 
 	"golang.org/x/text/encoding"
@@ -17,8 +15,8 @@ type File struct {
 	Name string // without its folder
 	Size int64  // bytes
 
-	open       func() (io.ReadCloser, error)
-	head, tail []byte // as in the file
+	parts      []part // one, or those that the recording was split into
+	head, tail []byte // of the first and the last, as in the file
 }
 
 // What is looked at for a guess and a preview [bytes].
@@ -29,11 +27,7 @@ const (
 
 // Open looks at both ends of a file.
 func Open(path string) (*File, error) {
-	info, err := os.Stat(path)
-	if err != nil {
-		return nil, err
-	}
-	return OpenSource(filepath.Base(path), info.Size(), func() (io.ReadCloser, error) { return os.Open(path) })
+	return OpenFiles(path)
 }
 
 // OpenBytes opens a file that is in memory.
@@ -43,24 +37,7 @@ func OpenBytes(name string, data []byte) (*File, error) {
 
 // OpenSource opens what reopen gives from its start, again and again; size is in bytes.
 func OpenSource(name string, size int64, reopen func() (io.ReadCloser, error)) (*File, error) {
-	f := &File{Name: name, Size: size, open: reopen}
-	in, err := reopen()
-	if err != nil {
-		return nil, err
-	}
-	defer in.Close()
-	if f.head, err = io.ReadAll(io.LimitReader(in, headBytes)); err != nil {
-		return nil, err
-	}
-	if f.tail = f.head; size > headBytes {
-		if s, ok := in.(io.Seeker); ok {
-			if _, err := s.Seek(-tailBytes, io.SeekEnd); err != nil {
-				return nil, err
-			}
-		}
-		f.tail, err = io.ReadAll(in)
-	}
-	return f, err
+	return OpenSources([]string{name}, []int64{size}, func(int) (io.ReadCloser, error) { return reopen() })
 }
 
 var marks = []struct {

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 )
 
 // timeline makes rising times of stamps as they stand in the file, and the order of rows.
@@ -13,6 +14,8 @@ type timeline struct {
 	index []int32   // rows in their order; nil = as in the file
 	dt    float64   // s, median step
 	late  []int32   // rows that came too late
+
+	dropped []int // rows that the part before has already; their times are NaN
 
 	midnights, summer, resets []jump
 }
@@ -40,9 +43,15 @@ func (im *importer) timeline() (*timeline, error) {
 	if !(tl.dt > 0) {
 		return nil, fmt.Errorf("the time stamps never rise; say which column holds them")
 	}
+	if err := tl.joints(); err != nil {
+		return nil, err
+	}
 	tl.walk()
 	if c := tl.choice("clock reset", "append", "refuse"); len(tl.resets) > 0 && c == "refuse" {
 		return nil, fmt.Errorf("line %d: the clock falls back, and the recipe refuses that", im.lineOf(tl.resets[0].row))
+	}
+	if p := tl.Recipe.Time.Pauses; len(p) > len(tl.resets) {
+		return nil, fmt.Errorf("the recipe tells of %s of a clock that begins anew, the file has %d; take out what is too much", counted(len(p), "pause"), len(tl.resets))
 	}
 	tl.sayJumps()
 	tl.sort()
@@ -92,6 +101,9 @@ func (tl *timeline) walk() {
 	wallClock := tl.Recipe.Time.Form == Clock || tl.Recipe.Time.Form == Dated && !tl.stamps.zoned
 	wraps := tl.Recipe.Time.Form == Clock || tl.stamps.undated > 0
 	for i := 1; i < len(t); i++ {
+		if t[i] != t[i] {
+			continue
+		}
 		x := t[i] + off
 		if wraps && x-prev < -day/2 {
 			off, x = off+day, x+day
@@ -109,12 +121,20 @@ func (tl *timeline) walk() {
 			t[i] = x
 			continue
 		case d < 0 || d > 30*day && d > 100*(prev-t[0]):
-			by := prev + tl.dt - x
-			off, x = off+by, prev+tl.dt
+			by := prev + tl.pause(len(tl.resets)) - x
+			off, x = off+by, x+by
 			tl.resets = append(tl.resets, jump{i, by})
 		}
 		t[i], prev = x, x
 	}
+}
+
+// pause is the time from the last row before the clock began anew to the first after.
+func (tl *timeline) pause(k int) float64 {
+	if p := tl.Recipe.Time.Pauses; k < len(p) {
+		return p[k]
+	}
+	return tl.dt
 }
 
 // hourOff reports whether a step is one row and an hour more or less, at a full hour of
@@ -183,20 +203,26 @@ func (tl *timeline) sayJumps() {
 		add("summer time", tl.summer, false, how+", as where summer time begins or ends", "evened out", "even out", "even out", "leave")
 	}
 	if len(tl.resets) > 0 {
-		r := tl.resets[0]
-		add("clock reset", tl.resets, true, fmt.Sprintf("the clock jumps %s, the first time by %.6g s", times(len(tl.resets)), -(r.by)+tl.dt),
-			"what follows is put one step after what was before; how long the pause was is not known", "append", "append", "refuse")
+		r, p := tl.resets[0], tl.Recipe.Time.Pauses
+		done := "what follows is put one step after what was before; how long the pause was is not known"
+		if len(p) > 0 {
+			done = fmt.Sprintf("what follows is put after the pauses that the recipe tells, %s s", strings.Trim(fmt.Sprint(p[:min(len(p), len(tl.resets))]), "[]"))
+		}
+		add("clock reset", tl.resets, len(p) < len(tl.resets), fmt.Sprintf("the clock jumps %s, the first time by %.6g s", times(len(tl.resets)), -(r.by)+tl.pause(0)),
+			done, "append", "append", "refuse")
 	}
 }
 
 // sort puts late rows where they belong, or drops them.
 func (tl *timeline) sort() {
-	if len(tl.late) == 0 {
+	if len(tl.late)+len(tl.dropped) == 0 {
 		return
 	}
-	first := int(tl.late[0])
-	c := Correction{Key: "out of order", Count: len(tl.late), Line: tl.lineOf(first), T: tl.t[first], Text: counted(len(tl.late), "row") + " out of order",
+	c := Correction{Key: "out of order", Count: len(tl.late), Text: counted(len(tl.late), "row") + " out of order",
 		Choices: []string{"sort", "drop"}, Choice: tl.choice("out of order", "sort", "drop"), Done: "sorted by time"}
+	if len(tl.late) > 0 {
+		c.Line, c.T = tl.lineOf(int(tl.late[0])), tl.t[tl.late[0]]
+	}
 	tl.index = make([]int32, 0, len(tl.t))
 	k := 0
 	for i := range tl.t {
@@ -206,6 +232,9 @@ func (tl *timeline) sort() {
 				continue
 			}
 		}
+		if tl.t[i] != tl.t[i] {
+			continue
+		}
 		tl.index = append(tl.index, int32(i))
 		for j := len(tl.index) - 1; j > 0 && tl.t[tl.index[j-1]] > tl.t[tl.index[j]]; j-- {
 			tl.index[j-1], tl.index[j] = tl.index[j], tl.index[j-1]
@@ -214,7 +243,9 @@ func (tl *timeline) sort() {
 	if c.Choice == "drop" {
 		c.Done = "left out"
 	}
-	tl.Corrections = append(tl.Corrections, c)
+	if c.Count > 0 {
+		tl.Corrections = append(tl.Corrections, c)
+	}
 }
 
 func (tl *timeline) len() int {
@@ -301,8 +332,12 @@ func (tl *timeline) counted() {
 			last = c
 		}
 	}
+	done := ""
+	if tl.Recipe.Time.Form == Spaced {
+		done = "rows stand at the times that it gives them"
+	}
 	if first >= 0 {
 		tl.Corrections = append(tl.Corrections, Correction{Key: "record counter", Count: missing, Line: tl.lineOf(tl.row(first)), T: tl.Time[first], Warns: true,
-			Text: fmt.Sprintf("by the record counter %q, %s missing", tl.Recipe.Time.Counter, counted(missing, "row"))})
+			Text: fmt.Sprintf("by the record counter %q, %s missing", tl.Recipe.Time.Counter, counted(missing, "row")), Done: done})
 	}
 }

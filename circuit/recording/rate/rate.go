@@ -17,11 +17,18 @@ const (
 // choice, two for each of some ten phases.
 const leastPerCycle = 20
 
+// Rows that do not differ tell nothing of what lies within them: our choice of how alike they
+// are then [share], and from which interval on [s] a whole cycle of a machine may lie in one.
+const (
+	alike       = 0.01
+	wholeCycles = 1.0
+)
+
 // Check is what there is to say about the rate of a recording.
 type Check struct {
 	Interval float64 // s, between rows
 	Energy   float64 // J, of the products of the rows, positive and negative apart by size
-	Error    float64 // share of Energy, estimated; NaN where nothing moves or rows are too few
+	Error    float64 // share of Energy, estimated; NaN where nothing moves or rows cannot tell it
 	Order    float64 // with which the error falls with the interval
 	PerCycle float64 // rows a cycle; 0 = no cycle is known
 	Multiple float64 // how near the cycle is to a whole number of intervals, or the interval to one of cycles: 0..0.5
@@ -58,7 +65,11 @@ func Of(t, effort, flow []float64, means bool, cycle float64) Check {
 			c.Coarser = append(c.Coarser, Coarser{h, Means(t, effort, flow, h)/c.Energy - 1, spot(t, effort, flow, h, c.Energy)})
 		}
 	}
-	c.judge(means, cycle)
+	blind := c.Energy > 0 && (cycle > 0 && cycle < 2*c.Interval || cycle <= 0 && c.Interval >= wholeCycles && even(effort, flow))
+	if blind { // what thinning tells is chance, and 0 % where the interval is a multiple of the cycle
+		c.Error, c.Order = math.NaN(), math.NaN()
+	}
+	c.judge(means, blind, cycle)
 	c.cycle(cycle)
 	return c
 }
@@ -68,12 +79,16 @@ func (c *Check) say(warns bool, format string, args ...any) {
 	c.Warns = c.Warns || warns
 }
 
-func (c *Check) judge(means bool, cycle float64) {
+func (c *Check) judge(means, blind bool, cycle float64) {
 	how := "rows are instants; thinned to every second and fourth, the energy changes such that"
 	if means {
 		how = "rows are means, so a product of them leaves out what goes up and down together within one; joined by two and four, the energy changes such that"
 	}
 	switch {
+	case blind && cycle > 0:
+		c.say(true, "logged every %.3g s: the error of the energy cannot be told from these rows, for a cycle of %.4g s has fewer than two; log faster", c.Interval, cycle)
+	case blind:
+		c.say(true, "logged every %.3g s: the error of the energy cannot be told from these rows, for they hardly differ: the machine runs steadily, or its cycle goes into the interval; log faster for an hour", c.Interval)
 	case math.IsNaN(c.Error):
 		c.say(false, "nothing moves under a load: there is no energy to judge the rate by")
 	case cycle > 0 && cycle < leastPerCycle*c.Interval:
@@ -85,6 +100,16 @@ func (c *Check) judge(means bool, cycle float64) {
 	default:
 		c.say(true, "logged every %.3g s: %s an error of about %.2g %% is left; not fit for energy, log faster", c.Interval, how, 100*c.Error)
 	}
+}
+
+// even reports whether the products of all rows are alike.
+func even(effort, flow []float64) bool {
+	low, high := math.Inf(1), 0.0
+	for i := range effort {
+		p := math.Abs(effort[i] * flow[i])
+		low, high = math.Min(low, p), math.Max(high, p)
+	}
+	return high-low <= alike*high
 }
 
 // cycle compares the interval with the cycle.

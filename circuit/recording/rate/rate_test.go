@@ -2,6 +2,7 @@ package rate
 
 import (
 	"math"
+	"strings"
 	"testing"
 )
 
@@ -63,5 +64,24 @@ func TestRowsAndCycle(t *testing.T) {
 	}
 	if c := Of(ts, e, make([]float64, len(ts)), false, 0); !math.IsNaN(c.Error) || c.Warns {
 		t.Errorf("nothing moves: %+v", c)
+	}
+}
+
+// Means over whole cycles are all alike: thinned and joined they do not change, and yet they
+// lose a ninth of the energy (4 of 4.5, by calculus). The check must not say 0 %.
+func TestWholeCyclesCannotBeTold(t *testing.T) {
+	for _, cycle := range []float64{12, 0} {
+		ts, e := sines(12, 50, true)
+		c := Of(ts, e, e, true, cycle)
+		if !math.IsNaN(c.Error) || !c.Warns || !strings.Contains(c.Remarks[0], "cannot be told from these rows") {
+			t.Errorf("cycle %g s: %+v", cycle, c)
+		}
+	}
+	steady, one := sines(0.1, 500, false)
+	for i := range one {
+		one[i] = 2
+	}
+	if c := Of(steady, one, one, false, 0); c.Warns || c.Error != 0 {
+		t.Errorf("a steady machine, logged fast: %+v", c)
 	}
 }
