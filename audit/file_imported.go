@@ -35,7 +35,7 @@ type Import struct {
 	Columns      map[string]string // by track, the channel it is
 	Derived      []Derived
 	Part         logged.Part // of the recording, that makes the duty
-	Also         []Also // recordings of other loggers, set beside it
+	Also         []Also      // recordings of other loggers, set beside it
 }
 
 // Derived is a track that was worked out from channels.
