@@ -188,6 +188,9 @@ func isFuel(c circuit.Channel) bool { return c.Role == circuit.Supply && c.Kind 
 
 // pulses books what a time step draws and loses at once, such as the start of a motor.
 func (l *Ledger) pulses(s *circuit.Sample) {
+	if !s.Pulsed {
+		return
+	}
 	base, sums := len(l.channels), l.sums[situationOf(s)]
 	for i, e := range s.Pulse {
 		if e == 0 {

@@ -57,12 +57,12 @@ func (m *compensatorModel) eval(e *eval) {
 	e.drop(m.P, m.A, m.q, r+e.val(m.z), dr)
 	// More throttling lowers pA: the row rises with z.
 	e.add(m.z, m.held-(e.val(m.A)-e.val(m.ls)))
-	if e.plain() {
+	if e.steady == nil {
 		return
 	}
-	e.d(m.q, m.z, 1)
-	e.d(m.z, m.A, -1)
-	e.d(m.z, m.ls, 1)
+	e.same(m.q, m.z, 1)
+	e.same(m.z, m.A, -1)
+	e.same(m.z, m.ls, 1)
 }
 
 func (m *compensatorModel) book(k *booking) { k.through(m.P, m.A, k.val(m.q), m.qP, m.qA, m.loss) }

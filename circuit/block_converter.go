@@ -102,11 +102,11 @@ func (m *converterModel) bookSupply(k *booking) {
 	k.pow[m.loss] += loss
 	if in < 0 && !m.mains {
 		k.pow[m.resistor] += -in
-		in = math.Max(in, 0)
+		in = 0
 	}
 	k.put(m.sigIn, in)
 	k.put(m.sigLink, (each-math.Abs(out))/2)
 	k.put(m.sigI, math.Abs(in)/(math.Sqrt(3)*m.U*m.cos))
 	k.pow[m.supply] += in
-	k.pulse[m.supply] += k.elJ[m.el]
+	k.strike(m.supply, k.elJ[m.el])
 }

@@ -147,8 +147,8 @@ func (m *engineModel) bookShaft(k *booking) {
 	k.pow[m.loss] += fuel - P
 	k.pow[m.fuel] += fuel
 	if m.start >= 0 && k.step.startsUp() {
-		k.pulse[m.start] += m.starts
-		k.pulse[m.fuel] += m.starts
+		k.strike(m.start, m.starts)
+		k.strike(m.fuel, m.starts)
 	}
 }
 

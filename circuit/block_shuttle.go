@@ -36,6 +36,6 @@ func (m *shuttleModel) eval(e *eval) {
 		from = m.y
 	}
 	e.add(m.a, e.val(m.a)-max(e.val(m.x), e.val(m.y)))
-	e.d(m.a, m.a, 1)
+	e.same(m.a, m.a, 1)
 	e.d(m.a, from, -1)
 }

@@ -88,6 +88,7 @@ type valveModel struct {
 	regen      bool // feeding A joins B to P
 	centre     string
 	q          [4]slot
+	passes     int  // how many of q there are
 	open       slot // opening of a valve that follows an axis
 	out        meterOut
 	qN, dN, qC int
@@ -130,15 +131,12 @@ func newValve(k *compiler, b *Block, around string) valveModel {
 		m.ls = k.node(b, "LS")
 		k.port(b, "LS")
 	}
-	n := 2
+	m.passes = 2
 	if m.centre == "open" {
-		n = 4
+		m.passes = 4
 	}
-	for i := range m.q {
-		m.q[i] = noSlot
-		if i < n {
-			m.q[i] = k.unknown(passRow, b.ID)
-		}
+	for i := range m.passes {
+		m.q[i] = k.unknown(passRow, b.ID)
 	}
 	axis := follows(b)
 	if d := b.Word("directs"); d != "" {
@@ -181,6 +179,7 @@ func (m *valveModel) begin(s *step) {
 	if m.dir == m.was && m.now == was { // all stands as it is
 		return
 	}
+	s.changes()
 	m.branch = [4]branch{}
 	pick := func(i int, a, b slot, t throat, edge int) { m.branch[i] = branch{a, b, t, edge, true} }
 	switch {
@@ -205,10 +204,7 @@ func (m *valveModel) begin(s *step) {
 		pick(2, m.A, m.T, m.mid, edgeAT)
 		pick(3, m.B, m.T, m.mid, edgeBT)
 	}
-	for i, q := range m.q {
-		if q < 0 {
-			continue
-		}
+	for i, q := range m.q[:m.passes] {
 		if m.branch[i].on {
 			s.bounds(q, math.Inf(-1), math.Inf(1))
 		} else {
@@ -255,8 +251,8 @@ func (m *valveModel) position(s *step) {
 
 // start gives the flows and the throttling of a new position a first value.
 func (m *valveModel) start(x []float64) {
-	for i, q := range m.q {
-		if q >= 0 && m.branch[i].on {
+	for i, q := range m.q[:m.passes] {
+		if m.branch[i].on {
 			x[q] = min(0.05, math.Abs(m.wanted)+1e-3)
 			if m.now {
 				x[q] = m.flow
@@ -288,13 +284,12 @@ func (m *valveModel) opening(e *eval) float64 {
 
 func (m *valveModel) eval(e *eval) {
 	u := m.opening(e)
-	for i, q := range m.q {
-		br := &m.branch[i]
+	for i := range m.passes {
+		br, q := &m.branch[i], m.q[i]
 		switch {
-		case q < 0:
 		case !br.on:
 			e.add(q, e.val(q))
-			e.d(q, q, 1)
+			e.same(q, q, 1)
 		case m.dir == 0:
 			v := e.branch(br.a, br.b, q)
 			r, dr := br.t.at(v)
@@ -314,17 +309,17 @@ func (m *valveModel) eval(e *eval) {
 			e.d(m.open, m.vel, sg)
 		} else {
 			e.add(m.open, e.val(m.open))
-			e.d(m.open, m.open, 1)
+			e.same(m.open, m.open, 1)
 		}
 	}
 	m.out.eval(e, m.loadPort(), m.dir != 0)
 	if m.ls >= 0 {
 		load := m.loadPort()
 		e.add(m.ls, e.val(m.ls))
-		e.d(m.ls, m.ls, 1)
+		e.same(m.ls, m.ls, 1)
 		if load != noSlot {
 			e.add(m.ls, -e.val(load))
-			e.d(m.ls, load, -1)
+			e.same(m.ls, load, -1)
 		}
 	}
 }
@@ -340,7 +335,7 @@ func (m *valveModel) evalEdge(e *eval, br *branch, q slot, u float64, of slot) {
 		return
 	}
 	slope = u * br.t.chord(dp, full, v/u, slope)
-	e.d(q, q, 1)
+	e.same(q, q, 1)
 	e.d(q, br.a, -slope)
 	e.d(q, br.b, slope)
 	e.d(q, of, -full)
@@ -359,9 +354,9 @@ func (m *valveModel) loadPort() slot {
 
 func (m *valveModel) book(k *booking) {
 	var q [4]float64 // into P A B T
-	for i := range m.branch {
+	for i := range m.passes {
 		br := &m.branch[i]
-		if m.q[i] < 0 || !br.on {
+		if !br.on {
 			continue
 		}
 		v := k.m3s(k.val(m.q[i]))

@@ -128,10 +128,10 @@ func (m *motorStart) book(k *booking, el, supply int) {
 		from = 0
 	}
 	E := (1 + m.ks) * m.J * (m.w*m.w - from*from) / 2
-	k.pulse[m.loss] += E
+	k.strike(m.loss, E)
 	if el >= 0 {
 		k.elJ[el] += E
 	} else {
-		k.pulse[supply] += E
+		k.strike(supply, E)
 	}
 }

@@ -41,6 +41,7 @@ type eval struct {
 	rows   []float64 // what leaves the known nodes, then the rows
 	known  slot
 	slopes *balance.Slopes // nil where no slopes are wanted
+	steady *balance.Slopes // nil where those that stay as they are are known
 }
 
 func (e *eval) val(s slot) float64 { return e.all[s+e.known] }
@@ -58,46 +59,64 @@ func (e *eval) d(r, c slot, v float64) {
 	}
 }
 
+// same adds a derivative that stays as it is until a block says step.changes.
+func (e *eval) same(r, c slot, v float64) {
+	if e.steady != nil {
+		e.steady.AddSteady(int(r), int(c), v)
+	}
+}
+
 // plain reports that no slopes are wanted: blocks spare themselves those.
 func (e *eval) plain() bool { return e.slopes == nil }
 
-// branch adds the flow unknown q from node a to node b.
+// branch adds the flow unknown q from node a to node b, always the same ones but for step.changes.
 func (e *eval) branch(a, b, q slot) float64 {
 	v, rows, known := e.val(q), e.rows, e.known
 	rows[a+known] += v
 	rows[b+known] -= v
-	if j := e.slopes; j != nil {
-		j.Add(int(a), int(q), 1)
-		j.Add(int(b), int(q), -1)
+	if e.steady != nil {
+		e.same(a, q, 1)
+		e.same(b, q, -1)
 	}
 	return v
 }
 
 // drop adds the row of the flow unknown q between a and b: r(q) − (pa − pb),
-// where r and its slope dr are the pressure drop at q.
+// where r and its slope dr are the pressure drop at q. Nodes are as those of branch.
 func (e *eval) drop(a, b, q slot, r, dr float64) {
 	all, known := e.all, e.known
 	e.rows[q+known] += r + minResistance*all[q+known] - (all[a+known] - all[b+known])
-	if j := e.slopes; j != nil {
-		j.Add(int(q), int(q), dr+minResistance)
-		j.Add(int(q), int(a), -1)
-		j.Add(int(q), int(b), 1)
+	e.d(q, q, dr+minResistance)
+	if e.steady != nil {
+		e.same(q, a, -1)
+		e.same(q, b, 1)
 	}
 }
 
-// conduct adds the linear flow k·(pa − pb) from a to b and returns it.
-func (e *eval) conduct(a, b slot, k float64) float64 {
+// conduct adds the linear flow k·(pa − pb) from a to b, with the same k but for step.changes.
+func (e *eval) conduct(a, b slot, k float64) {
 	all, rows, known := e.all, e.rows, e.known
 	q := k * (all[a+known] - all[b+known])
 	rows[a+known] += q
 	rows[b+known] -= q
-	if j := e.slopes; j != nil {
-		j.Add(int(a), int(a), k)
-		j.Add(int(a), int(b), -k)
-		j.Add(int(b), int(a), -k)
-		j.Add(int(b), int(b), k)
+	if e.steady != nil {
+		e.same(a, a, k)
+		e.same(a, b, -k)
+		e.same(b, a, -k)
+		e.same(b, b, k)
 	}
-	return q
+}
+
+// pass adds a flow q from a to b with its slope k by the drop.
+func (e *eval) pass(a, b slot, q, k float64) {
+	e.add(a, q)
+	e.add(b, -q)
+	if !e.plain() {
+		e.d(a, a, k)
+		e.d(a, b, -k)
+		e.d(b, a, -k)
+		e.d(b, b, k)
+	}
 }
 
 // hot is what every step of a run needs, sorted out once.
@@ -180,14 +199,17 @@ func (r *run) sort() {
 // Eval adds all rows: it is the balance.Problem. Unknowns and rows are those of r.ev.
 func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 	e := &r.ev
-	e.slopes = j
+	e.slopes, e.steady = j, nil
+	if j != nil && j.Stating() {
+		e.steady = j
+	}
 	clear(e.rows)
 	r.leaks(e)
 	for i := range r.free {
 		// σ is 1 while a shaft turns forwards, −1 backwards, between at rest.
 		s := &r.free[i]
 		e.add(s.sigma, -e.val(s.speed))
-		e.d(s.sigma, s.speed, -1)
+		e.same(s.sigma, s.speed, -1)
 	}
 	for _, m := range r.models {
 		m.eval(e)
@@ -197,13 +219,14 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 // leaks sets the rows of nodes to what ties them to tank, and adds what ties them to
 // what a held load asks for.
 func (r *run) leaks(e *eval) {
-	rows, all, leak := e.rows, e.all, r.leak
+	leak, all := r.leak, e.all
+	rows := e.rows[:len(all)]
 	for _, i := range r.leaking {
 		rows[i] = leak * all[i]
 	}
-	if j := e.slopes; j != nil {
+	if e.steady != nil {
 		for _, at := range r.found {
-			j.Add(int(at.slot), int(at.slot), leak)
+			e.same(at.slot, at.slot, leak)
 		}
 	}
 	for _, n := range r.step.resting {
@@ -326,6 +349,9 @@ func (s *step) startsUp() bool { return s.stood && !s.standing }
 // unloaded reports whether relief valves are vented.
 func (s *step) unloaded() bool { return s.standing && s.atRest == Unload }
 
+// changes tells that a block adds other nodes or steady slopes from now on; see eval.same.
+func (s *step) changes() { s.solver.Restate() }
+
 // bounds sets the box of an unknown; for a fixed slot it does nothing.
 func (s *step) bounds(u slot, lo, hi float64) {
 	if u >= 0 {
@@ -347,16 +373,30 @@ func (s *step) val(u slot) float64 { return s.now.val(u) }
 type booking struct {
 	eval // for val and row
 	scales
-	cond  Conditions
-	step  *step
-	sig   []float64
-	pow   []float64
-	shaft []shaftBook
-	el    []float64 // W drawn at electric nodes, by node
-	each  []float64 // W, Σ|P| of what hangs at electric nodes
-	elJ   []float64 // J drawn at electric nodes at this instant
-	pulse []float64 // J, by channel
-	next  []float64 // slow states at this point
+	cond   Conditions
+	step   *step
+	sig    []float64
+	sums   []float64 // what is summed up over the blocks: pow, pulse, el, each and elJ, one after the other
+	pow    []float64
+	shaft  []shaftBook
+	el     []float64 // W drawn at electric nodes, by node
+	each   []float64 // W, Σ|P| of what hangs at electric nodes
+	elJ    []float64 // J drawn at electric nodes at this instant
+	pulse  []float64 // J, by channel
+	pulsed bool      // some are not 0
+	next   []float64 // slow states at this point
+}
+
+// room makes room for the sums over the blocks, which are cleared in one go.
+func (k *booking) room(channels, electric int) {
+	k.sums = make([]float64, 2*channels+3*electric)
+	left := k.sums
+	for _, part := range []struct {
+		of *[]float64
+		n  int
+	}{{&k.pow, channels}, {&k.pulse, channels}, {&k.el, electric}, {&k.each, electric}, {&k.elJ, electric}} {
+		*part.of, left = left[:part.n:part.n], left[part.n:]
+	}
 }
 
 type shaftBook struct{ torque, speed float64 } // N·m needed, rad/s
@@ -377,6 +417,14 @@ func (k *booking) put(i int, v float64) {
 func (k *booking) lose(i int, w float64) {
 	if i >= 0 {
 		k.pow[i] += w
+	}
+}
+
+// strike adds to what a channel draws or loses at this instant [J].
+func (k *booking) strike(i int, J float64) {
+	if J != 0 {
+		k.pulse[i] += J
+		k.pulsed = true
 	}
 }
 

@@ -11,7 +11,7 @@ func (m *machine) evalMachine(e *eval) {
 	q := set * w * m.d // ideal flow, S to P
 	e.add(m.S, q)
 	e.add(m.P, -q)
-	if !e.plain() {
+	if !e.plain() && (m.e >= 0 || m.speed >= 0) {
 		e.d(m.S, m.e, w*m.d)
 		e.d(m.S, m.speed, set*m.d)
 		e.d(m.P, m.e, -w*m.d)
@@ -63,12 +63,7 @@ func (m *machine) evalTurbulent(e *eval, a, b slot, share float64) {
 		return
 	}
 	q, k := m.turbulent(e.val(a)-e.val(b), share)
-	e.add(a, q)
-	e.d(a, a, k)
-	e.d(a, b, -k)
-	e.add(b, -q)
-	e.d(b, a, -k)
-	e.d(b, b, k)
+	e.pass(a, b, q, k)
 }
 
 // compression is the flow lost to compression from P to S and its slopes by drop, setting and speed, scaled.

@@ -223,9 +223,10 @@ func (m *pistonModel) eval(e *eval) {
 	v, k := e.val(m.v), m.share // of the axis; this cylinder's part of its flow and force
 	e.add(m.pA, k*v)
 	e.add(m.pB, -k*m.ratio*v)
-	if !e.plain() {
-		e.d(m.pA, m.v, k)
-		e.d(m.pB, m.v, -k*m.ratio)
+	if e.steady != nil {
+		e.same(m.pA, m.v, k)
+		e.same(m.pB, m.v, -k*m.ratio)
+		e.same(m.v, m.v, k*m.visc1)
 	}
 	if m.kl1 > 0 {
 		e.conduct(m.pA, m.pB, m.kl1)
@@ -238,7 +239,6 @@ func (m *pistonModel) eval(e *eval) {
 	e.add(m.v, m.load+k*(sg*dry+m.visc1*v-pA+m.ratio*pB))
 	if !e.plain() {
 		slope := m.kp1 * machines.Sign(pA-pB)
-		e.d(m.v, m.v, k*m.visc1)
 		e.d(m.v, m.pA, k*(-1+sg*slope))
 		e.d(m.v, m.pB, k*(m.ratio-sg*slope))
 		e.d(m.v, m.sigma, k*dry)

@@ -119,9 +119,8 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 		}
 	}
 	r.sort()
-	r.book = booking{eval: r.ev, scales: r.scales, cond: cond, step: &r.step, sig: make([]float64, len(c.signals)), pow: make([]float64, len(c.channels)),
-		shaft: make([]shaftBook, len(c.shafts)), el: make([]float64, c.electric), each: make([]float64, c.electric), elJ: make([]float64, c.electric),
-		pulse: make([]float64, len(c.channels))}
+	r.book = booking{eval: r.ev, scales: r.scales, cond: cond, step: &r.step, sig: make([]float64, len(c.signals)), shaft: make([]shaftBook, len(c.shafts))}
+	r.book.room(len(c.channels), c.electric)
 	r.sample = Sample{Signals: r.book.sig, Power: r.book.pow, Pulse: r.book.pulse, Axes: make([]AxisNow, len(c.axes)), Void: make([]float64, len(c.nodes))}
 	return r
 }
@@ -292,12 +291,9 @@ func (r *run) forceUnit(row *rowName) float64 {
 // bookAll books the point that was balanced last: signals, powers, slow states.
 func (r *run) bookAll() {
 	b := &r.book
-	clear(b.pow)
+	clear(b.sums)
+	b.pulsed = false
 	clear(b.shaft)
-	clear(b.el)
-	clear(b.each)
-	clear(b.elJ)
-	clear(b.pulse)
 	for _, m := range r.models {
 		m.book(b)
 	}
@@ -314,7 +310,9 @@ func (r *run) bookAll() {
 	for _, p := range r.portP {
 		sig[p.signal] = all[p.node+b.known] * unit
 	}
-	copy(b.next, r.state.slow)
+	if len(r.slowly) > 0 {
+		copy(b.next, r.state.slow)
+	}
 	for _, s := range r.slowly {
 		s.advance(b)
 	}
@@ -323,6 +321,7 @@ func (r *run) bookAll() {
 // report books the step into the sample and takes its states over.
 func (r *run) report(unbalanced bool) {
 	r.bookAll()
+	r.sample.Pulsed = r.book.pulsed
 	r.voids(&r.book)
 	r.axesNow(unbalanced)
 }
@@ -374,7 +373,9 @@ func (r *run) axesNow(unbalanced bool) {
 		k.meet(r.state.travel[k.axis], a.travel+a.before*dt/2, 10*k.unit*(dt+r.step.next)/2)
 	}
 	r.state.lastT, r.state.stood = s.T, r.step.standing
-	copy(r.state.slow, r.book.next)
+	if len(r.slowly) > 0 {
+		copy(r.state.slow, r.book.next)
+	}
 }
 
 // endsStanding reports whether a duty that repeats ends with all axes standing: so it then begins.

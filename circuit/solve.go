@@ -59,7 +59,10 @@ func (r *run) pilots(x, good []float64) balance.Result {
 
 // Ease makes the circuit leakier by a share of 1e-3 of its flow scale at 100 bar: what
 // hangs on the least of leaks then hangs on more.
-func (r *run) Ease(e float64) { r.leak = leak + 1e-3*e }
+func (r *run) Ease(e float64) {
+	r.leak = leak + 1e-3*e
+	r.solver.Restate()
+}
 
 // approach solves a step that withstood all else by way of easier ones: the axes
 // move faster at first, where throttling edges are well open, and slow down to

@@ -96,8 +96,9 @@ func (m *machine) evalSwitched(e *eval) {
 		if way.share == 0 {
 			continue
 		}
-		e.conduct(way.a, way.b, way.k)
-		byE := m.switched.slip * way.share * machines.Sign(set) * (e.val(way.a) - e.val(way.b))
+		drop := e.val(way.a) - e.val(way.b)
+		e.pass(way.a, way.b, way.k*drop, way.k)
+		byE := m.switched.slip * way.share * machines.Sign(set) * drop
 		e.d(way.a, m.e, byE)
 		e.d(way.b, m.e, -byE)
 	}

@@ -55,7 +55,7 @@ func (t *throat) chord(dp, full, q, tangent float64) float64 {
 		return tangent
 	}
 	to, _ := t.at(q)
-	if d := dp - to; math.Abs(d) > 0.5*math.Max(math.Abs(dp), math.Abs(to)) && d != 0 {
+	if d := dp - to; math.Abs(d) > 0.5*max(math.Abs(dp), math.Abs(to)) && d != 0 {
 		if s := (full - q) / d; s > 0 {
 			return s
 		}

@@ -55,6 +55,7 @@ type Sample struct {
 	Signals    []float64 // by Compiled.Signals
 	Power      []float64 // W, by Compiled.Channels
 	Pulse      []float64 // J, by Compiled.Channels: what is booked at this instant beside the powers, such as the start of a motor
+	Pulsed     bool      // some of Pulse are not 0
 	Axes       []AxisNow // by Compiled.Axes
 	Standing   bool      // every axis stands
 	Holding    bool      // every axis stands and at least one under a load

@@ -81,35 +81,27 @@ func (s *Solver) norm(p Problem, x []float64, a aim, slopes bool) float64 {
 
 // residual is the min/max form. It also notes which unknowns rest on a bound.
 func (s *Solver) residual(x []float64) {
-	n, sum := len(s.g), 0.0
-	for k, at := 0, 0; at < n; k, at = k+1, at+64 {
-		to := min(at+64, n)
-		more, word := minmaxRows(x[at:to], s.g[at:to], s.Lo[at:to], s.Hi[at:to], s.Weight[at:to], s.r[at:to])
-		s.plans.key[k] = word
-		sum += more
-	}
-	s.setNorm(sum)
-}
-
-// minmaxRows is minmax for up to 64 rows. It returns the sum of squares, and the rows on a bound as bits.
-func minmaxRows(x, g, lo, hi, weight, out []float64) (sum float64, word uint64) {
-	x, lo, hi, weight, out = x[:len(g)], lo[:len(g)], hi[:len(g)], weight[:len(g)], out[:len(g)]
-	other := 0.0 // the sum in two parts that do not wait for each other
-	for i, r := range g {
-		w, v := weight[i], x[i]
+	g, key, sum := s.g, s.plans.key, 0.0
+	n := len(g)
+	lo, hi, weight, out := s.Lo[:n], s.Hi[:n], s.Weight[:n], s.r[:n]
+	clear(key)
+	for i, v := range x[:n] {
+		r, w := g[i], weight[i]
 		l, h := w*(v-lo[i]), w*(v-hi[i])
-		if l < r || l == h {
-			r = l
-			word |= 1 << (uint(i) & 63)
-		}
-		if h > r {
-			r = h
-			word |= 1 << (uint(i) & 63)
+		if !(h < r && r < l) { // else it is between its bounds
+			if l < r || l == h {
+				r = l
+				put(key, i)
+			}
+			if h > r {
+				r = h
+				put(key, i)
+			}
 		}
 		out[i] = r
-		sum, other = other, sum+r*r
+		sum += r * r
 	}
-	return sum + other, word
+	s.setNorm(sum)
 }
 
 func (s *Solver) smoothResidual(x []float64, a aim) {

@@ -40,7 +40,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			norm = s.norm(p, x, a, true)
 		}
 		before, repeated = norm, false
-		planned = s.planned(a)
+		planned = s.planned(x, a)
 		if !planned && !s.direction(x, a) {
 			return false, it
 		}
@@ -57,8 +57,7 @@ func (s *Solver) again(p Problem, x []float64, norm float64) bool {
 		return false
 	}
 	s.step()
-	copy(s.xt, x[:s.n])
-	s.move(x, 1)
+	s.stride(x)
 	if s.norm(p, x, aim{}, false) < norm {
 		return true
 	}
@@ -173,24 +172,23 @@ func (s *Solver) open(x []float64, a aim) []int32 {
 	return free
 }
 
-// lineSearch moves x along s.dx: a full step, shortened as a whole where it
-// would carry an unknown too far, halved until the norm is below the largest of
-// the last few, else the best of the points tried.
+// lineSearch moves x along s.dx: a full step, which a plan has taken already unless it is long,
+// shortened as a whole where it would carry an unknown too far, halved until the norm is below
+// the largest of the last few, else the best of the points tried.
 func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64 {
-	ref := s.hist[0]
-	for _, h := range s.hist[1:] {
-		ref = max(ref, h)
-	}
-	t := 1.0
-	if !planned || s.far {
+	before, gone, t := s.now.norm, planned && !s.far, 1.0
+	if !gone {
 		t = s.reach(x)
+		copy(s.xt, x[:s.n])
 	}
-	copy(s.xt, x[:s.n])
 	bestNorm, bestT := math.Inf(1), t
 	for k := 0; k <= 8; k++ {
-		s.move(x, t)
+		if !gone {
+			s.move(x, t)
+		}
+		gone = false
 		norm := s.norm(p, x, a, false)
-		if norm < ref || norm == 0 {
+		if norm < before || norm < s.recent() || norm == 0 {
 			return norm
 		}
 		if planned && k == 0 && !s.plans.last.sure(s.plans.work) { // the safer factors first
@@ -210,6 +208,15 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 	}
 	s.move(x, bestT)
 	return s.norm(p, x, a, true)
+}
+
+// recent is the largest norm of the last few points.
+func (s *Solver) recent() float64 {
+	m := s.hist[0]
+	for _, h := range s.hist[1:] {
+		m = max(m, h)
+	}
+	return m
 }
 
 // move puts x a share of the step s.dx on from s.xt.

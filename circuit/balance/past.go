@@ -4,7 +4,8 @@ package balance
 // parabola, up to mostOrder) that would have foretold the last one best. It is a start
 // for Newton's method, nothing else: a poor one costs a step, never a result.
 type past struct {
-	x     [mostOrder + 3][]float64 // last first; two more than a start needs, to judge it
+	x     [mostOrder + 3][]float64 // two more than a start needs, to judge it; in turns
+	at    int                      // the last of them; those before come after it
 	count int
 	order int
 }
@@ -24,6 +25,9 @@ func newPast(n int) (p past) {
 	return p
 }
 
+// before is the solution k before the last.
+func (p *past) before(k int) []float64 { return p.x[(p.at+k)&(len(p.x)-1)] }
+
 func (p *past) forget() { p.count, p.order = 0, 0 }
 
 // guess moves on the unknowns that stand where the last solution left them; the
@@ -33,9 +37,9 @@ func (p *past) guess(x, lo, hi []float64) bool {
 		return false
 	}
 	s := &ahead[p.order]
-	a := p.x[0]
+	a := p.before(0)
 	n := len(a)
-	b, c, d, x, lo, hi := p.x[1][:n], p.x[2][:n], p.x[3][:n], x[:n], lo[:n], hi[:n]
+	b, c, d, x, lo, hi := p.before(1)[:n], p.before(2)[:n], p.before(3)[:n], x[:n], lo[:n], hi[:n]
 	if p.order <= 3 {
 		for i, v := range a {
 			if x[i] == v {
@@ -44,7 +48,7 @@ func (p *past) guess(x, lo, hi []float64) bool {
 		}
 		return true
 	}
-	e, f := p.x[4][:n], p.x[5][:n]
+	e, f := p.before(4)[:n], p.before(5)[:n]
 	for i, v := range a {
 		if x[i] == v {
 			x[i] = within((s[0]*v+s[1]*b[i])+(s[2]*c[i]+s[3]*d[i])+(s[4]*e[i]+s[5]*f[i]), lo[i], hi[i])
@@ -66,10 +70,8 @@ func within(v, lo, hi float64) float64 {
 // keep takes a solution. At every sixteenth, and when the last start was poor, it finds
 // the order for the next.
 func (p *past) keep(x []float64, poor bool) {
-	oldest := p.x[len(p.x)-1]
-	copy(p.x[1:], p.x[:len(p.x)-1])
-	p.x[0] = oldest
-	copy(oldest, x)
+	p.at--
+	copy(p.before(0), x)
 	if p.count++; p.count > 2 && (poor || p.count&15 == 0) {
 		p.choose()
 	}
@@ -79,9 +81,10 @@ func (p *past) keep(x []float64, poor bool) {
 // less than those below it: two, for noise may meet one by chance. What order k has
 // missed is the difference of k+2 solutions.
 func (p *past) choose() {
-	n := len(p.x[0])
-	x0, x1, x2, x3 := p.x[0], p.x[1][:n], p.x[2][:n], p.x[3][:n]
-	x4, x5, x6, x7 := p.x[4][:n], p.x[5][:n], p.x[6][:n], p.x[7][:n]
+	x0 := p.before(0)
+	n := len(x0)
+	x1, x2, x3 := p.before(1)[:n], p.before(2)[:n], p.before(3)[:n]
+	x4, x5, x6, x7 := p.before(4)[:n], p.before(5)[:n], p.before(6)[:n], p.before(7)[:n]
 	var missed [mostOrder + 1]float64
 	for i, v := range x0 {
 		a, b, c, d, e, f, g := v-x1[i], x1[i]-x2[i], x2[i]-x3[i], x3[i]-x4[i], x4[i]-x5[i], x5[i]-x6[i], x6[i]-x7[i]

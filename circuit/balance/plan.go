@@ -19,20 +19,24 @@ type plan struct {
 	next    *plan    // another one of the same key
 	fixed   []int32  // the unknowns that rest on a bound
 	least   []float64
-	// Of each pivot its place and how many rows are below, of each of these its place in the
-	// pivot's column and how many updates, of each of these the place and that in the pivot's
-	// row whose share it loses.
-	pivots  []pair
-	forward []pair   // of each pivot its row and how many rows are below, of each of these its place and row
-	back    []pair   // last pivot first: row and column, place and how many other columns, of each of these place and column
-	tied    []triple // row, entry of the slopes, column by which known steps enter the other rows
-	size    int      // of work: residuals, steps, the entries of the slopes, then the fill
+	// Of each pivot its place and how many rows are below, its row and how many updates each of these
+	// needs; then of each row below its place in the pivot's column and its row, and of each update the
+	// place and that in the pivot's row whose share it loses.
+	pivots []pair
+	back   []pair   // last pivot first: row and column, place and how many other columns, of each of these place and column
+	tied   []triple // row, entry of the slopes, column by which known steps enter the other rows
+	size   int      // of work: residuals, steps, the entries of the slopes, then the fill
 }
 
-type (
-	pair   struct{ a, b int32 }
-	triple struct{ a, b, c int32 }
-)
+type triple struct{ a, b, c int32 }
+
+// pair is two numbers in one word, which is read in one go.
+type pair uint64
+
+func pairOf(a, b int32) pair { return pair(uint32(a)) | pair(b)<<32 }
+
+func (p pair) a() int { return int(uint32(p)) }
+func (p pair) b() int { return int(p >> 32) }
 
 const (
 	pivotShare = 0.1  // of its column that a pivot must have when a plan is made
@@ -41,79 +45,89 @@ const (
 	pivotBad   = 5    // a plan that failed so often is made anew
 )
 
-// run factors the slopes into work. It reports false when a pivot has become too small.
+// run factors the slopes into work, and carries the residual along that lies at its start. It
+// reports false when a pivot has become too small.
 func (p *plan) run(n int, val, work []float64) bool {
 	work = work[:p.size]
 	entries := work[2*n:]
 	clear(entries[copy(entries, val):])
 	code, at := p.pivots, 0
 	for _, least := range p.least {
-		pivot := code[at]
-		at++
-		v := work[pivot.a]
+		pivot, row := code[at], code[at+1]
+		at += 2
+		v := work[pivot.a()]
 		if !(v >= least || v <= -least) {
 			return false
 		}
 		v = 1 / v
-		work[pivot.a] = v
-		for below := pivot.b; below > 0; below-- {
-			row := code[at]
+		work[pivot.a()] = v
+		r := work[row.a()]
+		for more := pivot.b(); more > 0; more-- {
+			below := code[at]
 			at++
-			m := work[row.a] * v
-			work[row.a] = m
-			for updates := row.b; updates > 0; updates-- {
+			m := work[below.a()] * v
+			work[below.a()] = m
+			work[below.b()] -= m * r
+			for end := at + row.b(); at < end; at++ {
 				u := code[at]
-				at++
-				work[u.a] -= m * work[u.b]
+				work[u.a()] -= m * work[u.b()]
 			}
 		}
 	}
 	return true
 }
 
-// sure reports whether the pivots of the last run are hardly less than when the plan was
+// sure reports whether the pivots of the last factors are hardly less than when the plan was
 // made: then other factors would give the same step.
 func (p *plan) sure(work []float64) bool {
-	code, at := p.pivots, 0
+	code := p.pivots
 	for _, least := range p.least {
-		pivot := code[at]
-		if v := work[pivot.a]; !(math.Abs(v)*least < pivotLeast/surePivot) { // v is one over the pivot
+		pivot, row := code[0], code[1]
+		if v := work[pivot.a()]; !(math.Abs(v)*least < pivotLeast/surePivot) { // v is one over the pivot
 			return false
 		}
-		for at++; pivot.b > 0; pivot.b-- {
-			at += 1 + int(code[at].b)
-		}
+		code = code[2+pivot.b()*(1+row.b()):]
 	}
 	return true
 }
 
-// solve turns the residual at the start of work into the step behind it; the steps of
+// solve turns another residual at the start of work into the step behind it; the steps of
 // unknowns on a bound are there already, and with moved set they enter the other rows.
 func (p *plan) solve(val, work []float64, moved bool) {
 	if moved {
-		for _, t := range p.tied {
-			work[t.a] += val[t.b] * work[t.c]
+		p.tie(val, work)
+	}
+	for code, at := p.pivots, 0; at+1 < len(code); {
+		pivot, row := code[at], code[at+1]
+		at += 2
+		r := work[row.a()]
+		for more := pivot.b(); more > 0; more-- {
+			below := code[at]
+			at += 1 + row.b()
+			work[below.b()] -= work[below.a()] * r
 		}
 	}
-	for code, at := p.forward, 0; at < len(code); {
-		pivot := code[at]
-		at++
-		v := work[pivot.a]
-		for below := pivot.b; below > 0; below-- {
-			row := code[at]
-			at++
-			work[row.b] -= work[row.a] * v
-		}
+	p.backward(work)
+}
+
+// tie lets the steps of unknowns on a bound enter the other rows of a residual.
+func (p *plan) tie(val, work []float64) {
+	for _, t := range p.tied {
+		work[t.a] += val[t.b] * work[t.c]
 	}
+}
+
+// backward turns the residual that was carried along into the step behind it.
+func (p *plan) backward(work []float64) {
+	work = work[:p.size]
 	for code, at := p.back, 0; at+1 < len(code); {
 		to, pivot := code[at], code[at+1]
 		at += 2
-		sum := -work[to.a]
-		for others := pivot.b; others > 0; others-- {
+		sum := work[to.a()]
+		for end := at + pivot.b(); at < end; at++ {
 			e := code[at]
-			at++
-			sum -= work[e.a] * work[e.b]
+			sum += work[e.a()] * work[e.b()]
 		}
-		work[to.b] = sum * work[pivot.a]
+		work[to.b()] = -sum * work[pivot.a()]
 	}
 }

@@ -60,7 +60,7 @@ func each(set []uint64, f func(i int)) {
 // entries that are zero, and holds while they are.
 func (w *planner) make(p *plan, j *Slopes, key []uint64, lean bool) {
 	*p = plan{key: append(p.key[:0], key...), entries: len(j.val), none: p.none[:0], fixed: p.fixed[:0], least: p.least[:0],
-		pivots: p.pivots[:0], forward: p.forward[:0], back: p.back[:0], tied: p.tied[:0]}
+		pivots: p.pivots[:0], back: p.back[:0], tied: p.tied[:0]}
 	w.load(j, p, lean)
 	w.ends, w.right = w.ends[:0], w.right[:0]
 	for len(w.rows) > 0 {
@@ -176,27 +176,25 @@ func (w *planner) eliminate(p *plan, r, c int) {
 	piv := w.slot[r*n+c]
 	p.least = append(p.least, pivotLeast*math.Abs(w.a[r*n+c]))
 	below := int32(w.perCol[c])
-	p.pivots = append(p.pivots, pair{piv, below})
-	p.forward = append(p.forward, pair{int32(r), below})
-	w.right = append(w.right, pair{int32(r), w.step(c)}, pair{piv, int32(w.perRow[r] - 1)})
+	p.pivots = append(p.pivots, pairOf(piv, below), pairOf(int32(r), int32(w.perRow[r]-1)))
+	w.right = append(w.right, pairOf(int32(r), w.step(c)), pairOf(piv, int32(w.perRow[r]-1)))
 	from := len(w.right)
-	each(w.inRow[r], func(k int) { w.right = append(w.right, pair{w.slot[r*n+k], w.step(k)}) })
+	each(w.inRow[r], func(k int) { w.right = append(w.right, pairOf(w.slot[r*n+k], w.step(k))) })
 	w.ends = append(w.ends, len(w.right))
 	right := w.right[from:]
 	each(w.inCol[c], func(i int) {
 		l := w.slot[i*n+c]
-		p.forward = append(p.forward, pair{l, int32(i)})
-		p.pivots = append(p.pivots, pair{l, int32(len(right))})
+		p.pivots = append(p.pivots, pairOf(l, int32(i)))
 		m := w.a[i*n+c] / w.a[r*n+c]
 		for _, u := range right {
-			k := int(u.b) - n
+			k := u.b() - n
 			if !bit(w.inRow[i], k) {
 				w.slot[i*n+k], w.a[i*n+k] = int32(p.size), 0
 				p.size++
 				w.put(i, k)
 			}
 			w.a[i*n+k] -= m * w.a[r*n+k]
-			p.pivots = append(p.pivots, pair{w.slot[i*n+k], u.a})
+			p.pivots = append(p.pivots, pairOf(w.slot[i*n+k], int32(u.a())))
 		}
 	})
 }

@@ -92,8 +92,9 @@ func (p *plan) met(key []uint64) bool {
 	return true
 }
 
-// planned solves for the Newton step with a plan, if there is one and it works.
-func (s *Solver) planned(a aim) bool {
+// planned takes the Newton step from x with a plan, if there is one and it works; a long
+// step it only finds, and notes so in s.far.
+func (s *Solver) planned(x []float64, a aim) bool {
 	if a.smooth || a.delta > 0 {
 		return false
 	}
@@ -101,23 +102,42 @@ func (s *Solver) planned(a aim) bool {
 	if !p.sparse {
 		return false
 	}
-	if !p.run(s.n, s.j.val, s.plans.work) {
+	work := s.plans.work
+	if s.load() {
+		p.tie(s.j.val, work)
+	}
+	if !p.run(s.n, s.j.val, work) {
 		p.bad++
 		return false
 	}
-	s.step()
-	return s.usable()
+	p.backward(work)
+	if s.far = !s.stride(x); s.far {
+		copy(x, s.xt)
+		return s.numbers()
+	}
+	return true
 }
 
-// usable reports whether all of the step s.dx are numbers, and notes in s.far whether one is long.
-func (s *Solver) usable() bool {
-	s.far = false
-	for _, d := range s.dx {
+// stride goes the whole step s.dx from x, which it leaves in s.xt, and reports whether
+// all of it is short.
+func (s *Solver) stride(x []float64) bool {
+	short, dx := true, s.dx
+	x, from := x[:len(dx)], s.xt[:len(dx)]
+	for i, d := range dx {
+		v := x[i]
+		from[i], x[i] = v, v+d
 		if !(d*d <= maxStep*maxStep) {
-			s.far = true
-			if d != d {
-				return false
-			}
+			short = false
+		}
+	}
+	return short
+}
+
+// numbers reports whether all of the step s.dx are numbers.
+func (s *Solver) numbers() bool {
+	for _, d := range s.dx {
+		if d != d {
+			return false
 		}
 	}
 	return true
@@ -125,14 +145,23 @@ func (s *Solver) usable() bool {
 
 // step solves with the factors of the last plan for the present residual.
 func (s *Solver) step() {
-	p, work := s.plans.last, s.plans.work
-	s.dx = work[s.n : 2*s.n]
+	moved := s.load()
+	s.plans.last.solve(s.j.val, s.plans.work, moved)
+}
+
+// load puts the residual into the room of the plans, and the steps of unknowns on a bound; it
+// reports whether any of these moves.
+func (s *Solver) load() (moved bool) {
+	work, n := s.plans.work, s.n
 	copy(work, s.r)
-	moved := false
-	for _, i := range p.fixed {
+	s.dx = work[n : 2*n]
+	for _, i := range s.plans.last.fixed {
 		r := s.r[i]
-		s.dx[i] = -r / s.Weight[i]
-		moved = moved || r != 0
+		s.dx[i] = 0
+		if r != 0 {
+			s.dx[i] = -r / s.Weight[i]
+			moved = true
+		}
 	}
-	p.solve(s.j.val, work, moved)
+	return moved
 }

@@ -11,6 +11,10 @@ type Slopes struct {
 	side, zero int     // known+n, and the place of row 0, column 0 in it
 	val        []float64
 	row, col   []int32 // of each entry
+
+	steady  []float64 // by entry: that part of val which stays as it is from one evaluation to the next
+	stale   bool      // until something changes it
+	stating bool      // an evaluation states it anew
 }
 
 // The first entries take what has no place yet, and what counts for nothing.
@@ -21,10 +25,7 @@ const (
 )
 
 func newSlopes(n int) *Slopes {
-	j := &Slopes{n: n}
-	for range firstEntry {
-		j.val, j.row, j.col = append(j.val, 0), append(j.row, 0), append(j.col, 0)
-	}
+	j := &Slopes{n: n, val: make([]float64, firstEntry), steady: make([]float64, firstEntry), row: make([]int32, firstEntry), col: make([]int32, firstEntry)}
 	j.border(0)
 	return j
 }
@@ -32,7 +33,7 @@ func newSlopes(n int) *Slopes {
 // border makes room for known numbers, −1, −2, … −known.
 func (j *Slopes) border(known int) {
 	side := known + j.n
-	j.known, j.side, j.zero = known, side, known*side+known
+	j.known, j.side, j.zero, j.stale = known, side, known*side+known, true
 	j.at = make([]int32, side*side)
 	for i := range j.at {
 		if i/side < known || i%side < known {
@@ -49,27 +50,58 @@ func (j *Slopes) Add(r, c int, v float64) {
 	}
 }
 
+// Stating reports whether AddSteady is to be called in this evaluation.
+func (j *Slopes) Stating() bool { return j.stating }
+
+// AddSteady adds what stays as it is until Solver.Restate: it is asked for in the next evaluation
+// only, and counts in all that follow.
+func (j *Slopes) AddSteady(r, c int, v float64) {
+	if i := uint(r*j.side + c + j.zero); i < uint(len(j.at)) {
+		k := j.at[i]
+		j.steady[k] += v
+		j.val[k] += v // where it has no place, this tells
+	}
+}
+
 // untouched is −0: no sum that anything but −0 was added to is it.
 var untouched = math.Copysign(0, -1)
 
 // touched reports whether anything was added to what began as untouched.
 func touched(v float64) bool { return math.Float64bits(v) != 1<<63 }
 
-// eval evaluates p with slopes, again where an entry had no place.
+// eval evaluates p with slopes. Steady ones are stated in an evaluation of their own, so that
+// the sums are the same to the last bit whenever that was.
 func (j *Slopes) eval(p Problem, x, g []float64) {
-	clear(j.val)
+	if j.stale {
+		j.stating = true
+		clear(j.steady)
+		if j.once(p, x, g) {
+			clear(j.steady)
+			j.once(p, x, g)
+		}
+		j.stating, j.stale = false, false
+	}
+	if j.once(p, x, g) {
+		j.once(p, x, g)
+	}
+}
+
+// once evaluates p with slopes. It reports whether an entry had no place: then it has one now,
+// and p is to be evaluated again.
+func (j *Slopes) once(p Problem, x, g []float64) bool {
+	copy(j.val, j.steady)
 	j.val[noPlace] = untouched
 	p.Eval(x, g, j)
 	if touched(j.val[noPlace]) {
 		j.grow(p, x, g)
-		clear(j.val)
-		p.Eval(x, g, j)
+		return true
 	}
+	return false
 }
 
 // grow gives a place to every entry that p adds to at x.
 func (j *Slopes) grow(p Problem, x, g []float64) {
-	at, val := j.at, j.val
+	at, val, steady := j.at, j.val, j.steady
 	j.at, j.val = append([]int32(nil), at...), append([]float64(nil), val...)
 	for i, k := range at {
 		if k == noPlace { // a place of its own, for this once
@@ -77,9 +109,10 @@ func (j *Slopes) grow(p Problem, x, g []float64) {
 			j.val = append(j.val, untouched)
 		}
 	}
+	j.steady = make([]float64, len(j.val))
 	p.Eval(x, g, j)
 	tried, sums := j.at, j.val
-	j.at, j.val = at, val
+	j.at, j.val, j.steady = at, val, steady
 	for i, k := range at {
 		if k == noPlace && touched(sums[tried[i]]) {
 			j.place(i)
@@ -90,6 +123,6 @@ func (j *Slopes) grow(p Problem, x, g []float64) {
 // place makes room for an entry.
 func (j *Slopes) place(i int) {
 	j.at[i] = int32(len(j.val))
-	j.val = append(j.val, 0)
+	j.val, j.steady = append(j.val, 0), append(j.steady, 0)
 	j.row, j.col = append(j.row, int32(i/j.side-j.known)), append(j.col, int32(i%j.side-j.known))
 }

@@ -115,6 +115,9 @@ func (s *Solver) Border(known int) []float64 {
 	return s.rows
 }
 
+// Restate asks the problem for its steady slopes again (Slopes.AddSteady): something has changed them.
+func (s *Solver) Restate() { s.j.stale = true }
+
 // Residual evaluates the min/max residual of row i at the last evaluated point.
 func (s *Solver) Residual(i int) float64 { return s.r[i] }
 
