@@ -212,13 +212,16 @@ func needTable(p printer, runs []*CircuitRun) Table {
 		}
 		across(&t, runs, "heat to take: "+n.Case, of(func(n CoolerNeed) string { return p.power(n.Heat) }))
 		across(&t, runs, "capacity, cooling at "+p.degrees(n.Coolant), of(func(n CoolerNeed) string {
-			if n.Fault != "" {
+			switch {
+			case n.Fault != "":
 				return "none does"
+			case n.Heat <= 0:
+				return "none needed"
 			}
 			return p.cooler(n.Rate)
 		}))
-		across(&t, runs, "oil entering the cooler", of(func(n CoolerNeed) string { return p.degrees(n.Entering) }))
-		across(&t, runs, "oil flow there, mean", of(func(n CoolerNeed) string { return p.in(n.Flow, units.Flow, 3) }))
+		across(&t, runs, "oil entering the cooler", of(func(n CoolerNeed) string { return ifCooled(n, p.degrees(n.Entering)) }))
+		across(&t, runs, "oil flow there, mean", of(func(n CoolerNeed) string { return ifCooled(n, p.in(n.Flow, units.Flow, 3)) }))
 	}
 	across(&t, runs, "cooler in the file", func(_ *CircuitRun, h *HeatStudy) string {
 		if k := h.Section.stated(); k > 0 && h.Section.Word("cooler") != noCooler {
@@ -237,6 +240,14 @@ func needTable(p printer, runs []*CircuitRun) Table {
 		}
 	}
 	return t
+}
+
+// ifCooled leaves out what only a cooler has.
+func ifCooled(n CoolerNeed, text string) string {
+	if n.Heat <= 0 {
+		return "–"
+	}
+	return text
 }
 
 func checkTable(p printer, runs []*CircuitRun) Table {

@@ -44,6 +44,8 @@ func (s *Solution) Requests(system units.System) []Request {
 			r.Missing = "The file says nothing of tank and cooler; give the section heat, at least the oil in the tank."
 		case h.Week == nil:
 			r.Missing = h.Fault
+		case h.needless():
+			r.Missing = h.needlessText(p)
 		default:
 			r.Groups = []RequestGroup{requestLoad(p, c), requestOil(p, h), requestFlow(p, h), requestCoolant(p, h), requestFitting(p, h)}
 			r.Cautions = requestCautions
@@ -51,6 +53,19 @@ func (s *Solution) Requests(system units.System) []Request {
 		out = append(out, r)
 	}
 	return out
+}
+
+// needless reports whether the walls alone keep the oil at the temperature wanted, whatever duty goes on in the hottest hour.
+func (h *HeatStudy) needless() bool {
+	design := h.Needs[len(h.Needs)-1]
+	return design.Fault == "" && design.Heat <= 0
+}
+
+func (h *HeatStudy) needlessText(p printer) string {
+	design := h.Needs[len(h.Needs)-1]
+	text := fmt.Sprintf("No cooler is to be asked for: with %s going on in the hottest hour, air at %s, the walls of tank and machine give off the %s put in before the oil comes to %s.",
+		h.Loads[design.Load].Name, p.degrees(design.Air), p.power(design.Put), p.degrees(h.Wanted))
+	return text + " If a relief valve took all the power of " + p.power(h.Peak) + ": " + h.alarmText() + "; a switch that stops the machine there is the better protection."
 }
 
 var requestCautions = []string{

@@ -78,8 +78,7 @@ func newFindings(s *Station) *findings {
 func (f *findings) reload() {
 	doc := f.s.ctx.Doc()
 	if solving, _, _ := doc.Solving(); !solving || len(f.list) == 0 {
-		faults := f.toFix()
-		list := append(doc.Findings(), faults...)
+		list, faults := f.withFaults(doc.Findings())
 		slices.SortStableFunc(list, func(a, b circuit.Finding) int { return slices.Index(ranks, a.Level) - slices.Index(ranks, b.Level) })
 		f.list, f.cures, f.faults = list, nil, nil
 		for _, g := range list {

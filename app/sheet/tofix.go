@@ -1,6 +1,10 @@
 package sheet
 
-import "barlitre/circuit"
+import (
+	"slices"
+
+	"barlitre/circuit"
+)
 
 // Of the link below a finding of fix first.
 const (
@@ -9,13 +13,21 @@ const (
 	fixPage   = "Payback/Fix first"
 )
 
-// toFix are the faults of the circuits as found that fix first knows, as findings.
-func (f *findings) toFix() (out []circuit.Finding) {
+// withFaults adds the faults of the circuits as found that fix first knows to a list of findings, and returns those that have
+// the link to its page: the faults, and what is said of the same setting already.
+func (f *findings) withFaults(list []circuit.Finding) (all, linked []circuit.Finding) {
 	ctx := f.s.ctx
 	for _, x := range ctx.Doc().Faults(ctx.System()) {
-		out = append(out, circuit.Finding{Level: circuit.Warns, Circuit: x.Circuit, Duty: x.Duty, Block: x.Block, Parameter: x.Param, Time: x.Time, Text: x.Text})
+		i := slices.IndexFunc(list, func(g circuit.Finding) bool {
+			return x.Param != "" && g.Level == circuit.Warns && g.Circuit == x.Circuit && g.Block == x.Block && g.Parameter == x.Param
+		})
+		if i < 0 {
+			i = len(list)
+			list = append(list, circuit.Finding{Level: circuit.Warns, Circuit: x.Circuit, Duty: x.Duty, Block: x.Block, Parameter: x.Param, Time: x.Time, Text: x.Text})
+		}
+		linked = append(linked, list[i])
 	}
-	return out
+	return list, linked
 }
 
 // fixRoom is the height that the link takes below its finding.

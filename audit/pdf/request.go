@@ -16,7 +16,7 @@ func (l *layout) asks() bool {
 	return slices.ContainsFunc(l.r.Requests, func(r audit.Request) bool { return r.Missing == "" })
 }
 
-// requests prints the sheet of each circuit, on a page of its own.
+// requests prints the sheet of each circuit, on a page of its own where it fits; what needs none follows in a line.
 func (l *layout) requests() {
 	if !l.asks() {
 		why := "No circuit was solved, so no cooler is asked for."
@@ -28,16 +28,18 @@ func (l *layout) requests() {
 	}
 	first := true
 	for _, r := range l.r.Requests {
-		if !first {
+		if !first && r.Missing == "" {
 			l.newPage()
 		}
 		first = false
-		l.heading(2, r.Circuit, 30)
-		if r.Missing != "" {
-			l.para(r.Missing, l.body())
-			continue
-		}
-		l.request(r)
+		l.fitted(func() {
+			l.heading(2, r.Circuit, 12)
+			if r.Missing != "" {
+				l.para(r.Missing, l.body())
+				return
+			}
+			l.request(r)
+		})
 	}
 }
 

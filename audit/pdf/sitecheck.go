@@ -28,11 +28,24 @@ func (l *layout) plan(p *sitecheck.Plan) {
 		for _, s := range sitecheck.States() {
 			cells = append(cells, p.Shown(pt, s.Name))
 		}
-		t.rows = append(t.rows, row{cells: append(cells, p.Bad(pt), pt.Caution)})
+		t.rows = append(t.rows, row{cells: append(cells, p.Bad(pt), pt.Caution)}, blankRow(p, pt))
 	}
 	l.table(t)
 	l.lead(side, "Before you begin.", sitecheck.Cautions, l.body())
 	l.blanks()
+}
+
+// blankRow leaves room for what is read at a point, in the states that the model says something of.
+func blankRow(p *sitecheck.Plan, pt sitecheck.Point) row {
+	cells := []string{"read:"}
+	for _, s := range sitecheck.States() {
+		blank := "________"
+		if p.Shown(pt, s.Name) == "–" {
+			blank = ""
+		}
+		cells = append(cells, blank)
+	}
+	return row{cells: append(cells, "", "")}
 }
 
 // blanks leaves lines to write on.
