@@ -128,7 +128,7 @@ func printed(t *testing.T, s *audit.Solution) {
 		t.Fatal(err)
 	}
 	m := r.Circuits[0].Duties[0].Measured
-	if len(m) != 2 || m[1].Point != "Q1.flow" || float64(m[1].NMBE) != s.Circuits[0].Duties[0].Measured[1].NMBE || m[1].At != 6 {
+	if len(m) != 3 || m[1].Point != "Q1.flow" || float64(m[1].NMBE) != s.Circuits[0].Duties[0].Measured[1].NMBE || m[1].At != 6 {
 		t.Errorf("the result has %+v", m)
 	}
 }
