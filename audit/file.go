@@ -2,6 +2,7 @@ package audit
 
 import (
 	"bytes"
+	"context"
 	"fmt"
 	"io"
 	"os"
@@ -213,8 +214,8 @@ const Format = "barlitre/1"
 //
 // A track is axis.speed, axis.position, axis.load,
 // axis.command, or block.command for a block that is commanded by itself. A track of a
-// measuring point, X1.pressure or Q1.flow, is what was measured there: it changes nothing
-// and is compared with what is computed (see Measurement).
+// measuring point, X1.pressure or Q1.flow, or of what an electric motor takes from the mains,
+// M1.power, is what was measured there: it changes nothing and is compared with what is computed (see Measurement).
 //
 // The measured points of a pump or motor stand in such a table too; its head may be written as the test bench does it, see
 // machines.ReadPoints. A block names it as points: pump.csv.
@@ -274,6 +275,7 @@ type File struct {
 	root   *yaml.Node // the top mapping, or nil
 	open   Open
 	tables map[string]*recorded
+	how    Importing
 	found  []circuit.Finding
 }
 
@@ -375,7 +377,17 @@ const maxSize = 16 << 20
 // Read reads an audit file and the recordings beside it. All faults are found at
 // once, each with its line. The File is nil only when the text is not YAML or not
 // of this format; else it holds all that could be read.
-func Read(path string) (*File, []circuit.Finding) {
+func Read(path string) (*File, []circuit.Finding) { return ReadWith(path, Importing{}) }
+
+// Importing says how recordings beside an audit file are read.
+type Importing struct {
+	Context  context.Context                      // its end is that of reading, and a finding that stops; nil = none
+	Progress func(file string, done, total int64) // bytes, some times a second; may be nil
+	Known    *File                                // recordings that it has read are taken over where their SHA-256 is still the same; may be nil
+}
+
+// ReadWith is Read for recordings that take long.
+func ReadWith(path string, how Importing) (*File, []circuit.Finding) {
 	info, err := os.Stat(path)
 	if err == nil && info.Size() > maxSize {
 		err = fmt.Errorf("%s: is %d MB long; an audit file has at most %d MB", path, info.Size()>>20, maxSize>>20)
@@ -387,13 +399,23 @@ func Read(path string) (*File, []circuit.Finding) {
 	if err != nil {
 		return nil, []circuit.Finding{{Level: circuit.Stops, Text: err.Error()}}
 	}
-	return Parse(data, Beside(path), path)
+	return ParseWith(data, Beside(path), path, how)
 }
 
 // Parse reads an audit file from memory, as Read does; open reads the recordings
 // that it names and may be nil when there are none. path is kept for Save.
 func Parse(data []byte, open Open, path string) (*File, []circuit.Finding) {
-	return parse(slices.Clone(data), open, path, map[string]*recorded{})
+	return ParseWith(data, open, path, Importing{})
+}
+
+// ParseWith is Parse for recordings that take long.
+func ParseWith(data []byte, open Open, path string, how Importing) (*File, []circuit.Finding) {
+	data = slices.Clone(data)
+	root, faults := load(data)
+	if len(faults) > 0 {
+		return nil, faults
+	}
+	return parseTree(root, data, open, path, map[string]*recorded{}, how)
 }
 
 // Circuit returns a circuit by name, or nil.

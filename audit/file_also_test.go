@@ -1,6 +1,7 @@
 package audit_test
 
 import (
+	"context"
 	"fmt"
 	"math"
 	"os"
@@ -133,5 +134,37 @@ func TestSecondLogger(t *testing.T) {
 		if _, found := read(c.offset, turned); !strings.Contains(fmt.Sprint(found), c.want) {
 			t.Errorf("%s: %v", c.offset, found)
 		}
+	}
+}
+
+// Reading tells how far it is, ends when it is told to, and takes over what another file has
+// read of the same recording; of a recording that is another by now it does not.
+func TestReadingRecordings(t *testing.T) {
+	f, dir := keptImport(t)
+	told := int64(0)
+	g, found := audit.ReadWith(f.Path, audit.Importing{Known: f, Progress: func(file string, done, total int64) {
+		if told = done; file != "press.csv" || done > total {
+			t.Errorf("%s: %d of %d", file, done, total)
+		}
+	}})
+	size, err := os.Stat(filepath.Join(dir, "press.csv"))
+	if g == nil || err != nil || circuit.AnyStops(found) || told != size.Size() {
+		t.Fatalf("%d bytes told, %v", told, found)
+	}
+	if &g.Duties[0].Time[0] != &f.Duties[0].Time[0] {
+		t.Error("the recording was read again")
+	}
+	ctx, cancel := context.WithCancel(context.Background())
+	cancel()
+	if _, found = audit.ReadWith(f.Path, audit.Importing{Context: ctx}); !strings.Contains(fmt.Sprint(found), "reading press.csv was cancelled") || !circuit.AnyStops(found) {
+		t.Errorf("cancelled: %v", found)
+	}
+	text, _, _ := loggerRows()
+	if err := os.WriteFile(filepath.Join(dir, "press.csv"), []byte(strings.Replace(text, "0,02;", "0,021;", 1)), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	g, found = audit.ReadWith(f.Path, audit.Importing{Known: f})
+	if g == nil || g.Duties[0].Time[1] != 0.021 || !strings.Contains(fmt.Sprint(found), "is not the file that this duty was made from") {
+		t.Errorf("changed: %v", found)
 	}
 }

@@ -310,7 +310,7 @@ func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units
 	case r.blocks[of] && w.OfBlock():
 		return w.Dim(duty.Linear), true
 	case r.blocks[of]:
-		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, a measuring point a pressure or a flow; %s is for an axis", of, what)
+		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, a measuring point a pressure or a flow, an electric motor a power; %s is for an axis", of, what)
 	default:
 		r.bad(s, n, name, "there is no axis or block %q%s", of, guess(of, r.axisNamesKnown()))
 	}

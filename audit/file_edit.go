@@ -195,7 +195,7 @@ func (f *File) change(what string, splices []splice, holds func(*File) bool) err
 
 // take is change for a draft.
 func (f *File) take(what string, d *draft, holds func(*File) bool) error {
-	g, found := parseTree(d.root, d.src.data, f.open, f.Path, f.tables)
+	g, found := parseTree(d.root, d.src.data, f.open, f.Path, f.tables, Importing{})
 	if g == nil {
 		return fmt.Errorf("%s: %w", what, errLayout)
 	}

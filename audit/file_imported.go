@@ -2,6 +2,7 @@ package audit
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"io"
 	"io/fs"
@@ -186,6 +187,10 @@ func (r *reader) recording(s scope, at *yaml.Node, names []string, recipe *yaml.
 	}
 	rec, err := r.file.importFiles(names, rp)
 	if err != nil {
+		if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
+			r.bad(s, at, "file", "reading %s was cancelled", names[0])
+			return nil
+		}
 		r.bad(s, at, "file", "%v", cannotRead(names[0], err))
 		return nil
 	}
@@ -228,11 +233,37 @@ func (f *File) importFiles(names []string, rp logger.Recipe) (*logger.Recording,
 		sizes[k] = sizeOf(in)
 		in.Close()
 	}
-	file, err := logger.OpenSources(names, sizes, func(k int) (io.ReadCloser, error) { return f.open(names[k]) })
+	ctx, progress := f.how.Context, (func(done, total int64))(nil)
+	if ctx == nil {
+		ctx = context.Background()
+	}
+	if f.how.Progress != nil {
+		progress = func(done, total int64) { f.how.Progress(names[0], done, total) }
+	}
+	open := func(k int) (io.ReadCloser, error) { return f.open(names[k]) }
+	if rec := f.how.known(names, rp); rec != nil {
+		if sum, err := logger.Sum(ctx, sizes, open, progress); err != nil || sum == rec.SHA256 {
+			return rec, err
+		}
+	}
+	file, err := logger.OpenSources(names, sizes, open)
 	if err != nil {
 		return nil, err
 	}
-	return file.Import(context.Background(), rp, nil)
+	return file.Import(ctx, rp, progress)
+}
+
+// known finds a recording that another file has read by the same recipe.
+func (how Importing) known(names []string, rp logger.Recipe) *logger.Recording {
+	if how.Known == nil {
+		return nil
+	}
+	for key, t := range how.Known.tables {
+		if t.rec != nil && strings.HasPrefix(key, strings.Join(names, "\n")+"\x00") && reflect.DeepEqual(t.rec.Recipe, rp) {
+			return t.rec
+		}
+	}
+	return nil
 }
 
 // sizeOf tells how many bytes something that was opened holds, 0 where it does not say.

@@ -240,16 +240,16 @@ func parse(data []byte, open Open, path string, tables map[string]*recorded) (*F
 	if len(faults) > 0 {
 		return nil, faults
 	}
-	return parseTree(root, data, open, path, tables)
+	return parseTree(root, data, open, path, tables, Importing{})
 }
 
 // parseTree is parse for a text whose node tree is made already.
-func parseTree(root *yaml.Node, data []byte, open Open, path string, tables map[string]*recorded) (*File, []circuit.Finding) {
-	f := &File{Path: path, data: data, root: root, open: open, tables: tables}
+func parseTree(root *yaml.Node, data []byte, open Open, path string, tables map[string]*recorded, how Importing) (*File, []circuit.Finding) {
+	f := &File{Path: path, data: data, root: root, open: open, tables: tables, how: how}
 	r := &reader{file: f, axes: map[string]bool{}, blocks: map[string]bool{}}
 	if !r.plain(root) || !r.top(root) {
 		return nil, r.found
 	}
-	f.found = r.found
+	f.found, f.how = r.found, Importing{} // an edit reads what is new without them
 	return f, f.Findings()
 }

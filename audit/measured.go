@@ -16,7 +16,7 @@ import (
 //
 // and NaN for fewer than two rows or a mean of nothing.
 type Measurement struct {
-	Point              string // as the duty names it: "X1.pressure"
+	Point              string // as the duty names it: "X1.pressure", or of an electric motor "M1.power"
 	Dim                units.Dim
 	Rows               int
 	Measured, Computed float64 // means, SI
@@ -27,8 +27,11 @@ type Measurement struct {
 
 // MeasuredSignal names the signal that a measured track is compared with.
 func MeasuredSignal(tr duty.Track) string {
-	if tr.What == duty.MeasuredFlow {
+	switch tr.What {
+	case duty.MeasuredFlow:
 		return tr.Of + ".A.q"
+	case duty.MeasuredPower:
+		return tr.Of + ".electric"
 	}
 	return tr.Of + ".P.p"
 }

@@ -69,13 +69,13 @@ func TestMeasuredChannelsGiveTheKnownError(t *testing.T) {
 	f := parsed(t, metered)
 	base := solved(t, f)
 	r := ran(t, f, f.Circuits[0].Circuit, f.Duties[0])
-	errs := map[string][]float64{"X1.pressure": {2e5, -1e5, 3e5, 4e5, -6e5, 1e5}, "Q1.flow": {1e-5, 2e-5, -1e-5, 0, 1e-5, -4e-5}}
-	signal := map[string]string{"X1.pressure": "X1.P.p", "Q1.flow": "Q1.A.q"}
-	unit := map[string]string{"X1.pressure": "Pa", "Q1.flow": "m3/s"}
-	worst := map[string]float64{"X1.pressure": 5, "Q1.flow": 6} // s
+	errs := map[string][]float64{"X1.pressure": {2e5, -1e5, 3e5, 4e5, -6e5, 1e5}, "Q1.flow": {1e-5, 2e-5, -1e-5, 0, 1e-5, -4e-5}, "M1.power": {500, -200, 300, 0, -900, 100}}
+	signal := map[string]string{"X1.pressure": "X1.P.p", "Q1.flow": "Q1.A.q", "M1.power": "M1.electric"}
+	unit := map[string]string{"X1.pressure": "Pa", "Q1.flow": "m3/s", "M1.power": "W"}
+	worst := map[string]float64{"X1.pressure": 5, "Q1.flow": 6, "M1.power": 5} // s
 	measured := map[string][]float64{}
 	rows := ""
-	for _, point := range []string{"X1.pressure", "Q1.flow"} {
+	for _, point := range []string{"X1.pressure", "Q1.flow", "M1.power"} {
 		for i, at := range f.Duties[0].Time {
 			measured[point] = append(measured[point], r.at(t, signal[point], at)+errs[point][i])
 		}
@@ -86,10 +86,10 @@ func TestMeasuredChannelsGiveTheKnownError(t *testing.T) {
 	if a, b := d.Balance.SupplyIn, base.Circuits[0].Duties[0].Balance.SupplyIn; a != b {
 		t.Errorf("measuring changes what is drawn: %v, %v", a, b)
 	}
-	if len(d.Measured) != 2 {
+	if len(d.Measured) != 3 {
 		t.Fatalf("%d comparisons", len(d.Measured))
 	}
-	for _, m := range d.Measured {
+	for i, m := range d.Measured {
 		sum, squares, mean, largest := 0.0, 0.0, 0.0, 0.0
 		for i, e := range errs[m.Point] {
 			sum, squares, mean = sum+e, squares+e*e, mean+measured[m.Point][i]/6
@@ -104,10 +104,7 @@ func TestMeasuredChannelsGiveTheKnownError(t *testing.T) {
 		near(t, m.Point+" when", m.At, worst[m.Point], 0, 0)
 		near(t, m.Point+" mean", m.Measured, mean, 1e-12, 0)
 		near(t, m.Point+" rows", float64(m.Rows), 6, 0, 0)
-		tr := d.Plot.Measured[0]
-		if m.Point == "Q1.flow" {
-			tr = d.Plot.Measured[1]
-		}
+		tr := d.Plot.Measured[i]
 		if tr.Name != signal[m.Point] || tr.At(5) != measured[m.Point][4] {
 			t.Errorf("the plot has %+v", tr)
 		}
@@ -119,7 +116,7 @@ func TestMeasuredChannelsGiveTheKnownError(t *testing.T) {
 func printed(t *testing.T, s *audit.Solution) {
 	t.Helper()
 	table := s.Report(units.Metric).Circuits[0].Duties[0].Measured
-	if len(table.Rows) != 2 || table.Rows[0].Cells[0] != "X1.pressure" || table.Rows[0].Cells[6] != "−6.00\u202fbar" || table.Rows[0].Cells[3] != "0.500\u202fbar" {
+	if len(table.Rows) != 3 || table.Rows[0].Cells[0] != "X1.pressure" || table.Rows[0].Cells[6] != "−6.00\u202fbar" || table.Rows[0].Cells[3] != "0.500\u202fbar" {
 		t.Errorf("the report has %+v", table.Rows)
 	}
 	var b bytes.Buffer
@@ -131,7 +128,7 @@ func printed(t *testing.T, s *audit.Solution) {
 		t.Fatal(err)
 	}
 	m := r.Circuits[0].Duties[0].Measured
-	if len(m) != 2 || m[1].Point != "Q1.flow" || float64(m[1].NMBE) != s.Circuits[0].Duties[0].Measured[1].NMBE || m[1].At != 6 {
+	if len(m) != 3 || m[1].Point != "Q1.flow" || float64(m[1].NMBE) != s.Circuits[0].Duties[0].Measured[1].NMBE || m[1].At != 6 {
 		t.Errorf("the result has %+v", m)
 	}
 }

@@ -136,7 +136,7 @@ type GateResult struct {
 }
 
 // MeasuredResult compares a measured channel with what is computed, at the rows of the
-// duty; see Measurement. Differences are measured less computed. Pa or m³/s by the point.
+// duty; see Measurement. Differences are measured less computed. Pa, m³/s or W by the point.
 type MeasuredResult struct {
 	Point      string `json:"point"`
 	Rows       int    `json:"rows"`

@@ -251,7 +251,7 @@ func (k *checker) takes(d *duty.Duty, b *Block, w duty.What) {
 	control := KindNamed(b.Kind).WordOf(b, "control")
 	switch {
 	case w.Measured():
-		if kind := map[duty.What]string{duty.MeasuredPressure: kindPressurePoint, duty.MeasuredFlow: kindFlowPoint}[w]; b.Kind != kind {
+		if kind := map[duty.What]string{duty.MeasuredPressure: kindPressurePoint, duty.MeasuredFlow: kindFlowPoint, duty.MeasuredPower: kindElectricMotor}[w]; b.Kind != kind {
 			k.say(Stops, b, "", "duty %q has a measured track %s.%s, but %s is a %s; put a %s there and name that", d.Name, b.ID, w, b.ID, strings.ToLower(KindNamed(b.Kind).Title), strings.ToLower(KindNamed(kind).Title))
 		}
 	case w == duty.SetPressure || w == duty.SetFlow:

@@ -11,6 +11,8 @@ func TracksOf(b *Block) []duty.What {
 		return []duty.What{duty.MeasuredPressure}
 	case b.Kind == kindFlowPoint:
 		return []duty.What{duty.MeasuredFlow}
+	case b.Kind == kindElectricMotor:
+		return []duty.What{duty.MeasuredPower}
 	case isPQ(b):
 		return []duty.What{duty.SetPressure, duty.SetFlow}
 	case (isValve(b) || k.WordOf(b, "control") == "commanded") && follows(b) == "" && b.Word("directs") == "":

@@ -1,6 +1,7 @@
 package document
 
 import (
+	"context"
 	"fmt"
 	"os"
 	"path/filepath"
@@ -29,14 +30,25 @@ circuits: []
 // wrong in the file; what is right in it is solved. The error says why it is not an
 // audit file or cannot be read; the present audit then stays.
 func (d *Document) Open(path string) (problems []circuit.Finding, err error) {
+	return d.OpenWith(context.Background(), path, nil)
+}
+
+// OpenWith is Open for an audit with long recordings: progress, which may be nil, is told
+// how many bytes of which of them are read, and the end of ctx leaves the present audit as it is.
+// What the present audit has read of the same recordings is taken over.
+func (d *Document) OpenWith(ctx context.Context, path string, progress func(file string, done, total int64)) (problems []circuit.Finding, err error) {
 	path, err = filepath.Abs(path)
 	if err != nil {
 		return nil, fmt.Errorf("open %s: %w", path, err)
 	}
 	var f *audit.File
 	var found []circuit.Finding
-	if err := guarded(func() error { f, found = audit.Read(path); return nil }); err != nil {
+	how := audit.Importing{Context: ctx, Progress: progress, Known: d.File()}
+	if err := guarded(func() error { f, found = audit.ReadWith(path, how); return nil }); err != nil {
 		return nil, fmt.Errorf("open %s: %w", path, err)
+	}
+	if err := ctx.Err(); err != nil {
+		return nil, fmt.Errorf("open %s: it was cancelled; the audit that was open stays", path)
 	}
 	if f == nil {
 		return nil, notRead(path, found)

@@ -122,7 +122,7 @@ func (d *Document) rebind(o origin) (revision, ticket int) {
 	d.editing.Lock()
 	defer d.editing.Unlock()
 	now := d.snapshot()
-	f, _ := audit.Parse(now.text, o.opener(), o.Path)
+	f, _ := audit.ParseWith(now.text, o.opener(), o.Path, audit.Importing{Known: now.file})
 	d.mu.Lock()
 	defer d.mu.Unlock()
 	d.now.origin = o

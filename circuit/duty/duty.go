@@ -53,9 +53,10 @@ const (
 	SetFlow                      // m³/s, >= 0; of a block
 	MeasuredPressure             // Pa; of a measuring point: compared with what is found, and no demand
 	MeasuredFlow                 // m³/s; of a measuring point, as MeasuredPressure
+	MeasuredPower                // W, taken from the mains by an electric motor, as MeasuredPressure
 )
 
-var whatNames = [...]string{"speed", "position", "load", "command", "set_pressure", "set_flow", "pressure", "flow"}
+var whatNames = [...]string{"speed", "position", "load", "command", "set_pressure", "set_flow", "pressure", "flow", "power"}
 
 func (w What) String() string { return whatNames[w] }
 
@@ -78,6 +79,8 @@ func (w What) Dim(k AxisKind) units.Dim {
 		return units.Pressure
 	case w == SetFlow || w == MeasuredFlow:
 		return units.Flow
+	case w == MeasuredPower:
+		return units.Power
 	case w == Speed && rotary:
 		return units.AngularSpeed
 	case w == Speed:

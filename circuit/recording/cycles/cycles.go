@@ -53,7 +53,8 @@ type Result struct {
 	Energy  Spread
 	Length  Spread
 
-	in Input
+	in, coarse Input     // as it is, and with fewer rows
+	scanned    []float64 // a cycle as coarse has it, to scan by
 }
 
 // points is how many points a cycle is compared by.
@@ -146,20 +147,20 @@ func (r *Result) repeat(runs []run, o Options) {
 	t := r.in.T
 	long := slices.MaxFunc(runs, func(a, b run) int { return compare(t[a.b-1]-t[a.a], t[b.b-1]-t[b.a]) })
 	from, to := t[long.a], t[min(long.b, len(t)-1)]
-	n := min(maxLagSamples, long.b-long.a)
-	if n < 16 {
+	if long.b-long.a < 16 {
 		return
 	}
 	guess, height := o.Period, 1.0
 	if guess == 0 {
-		lag, h := period(autocorrelation(r.channels(from, to, n)))
-		guess, height = lag*(to-from)/float64(n-1), h
+		guess, height = r.in.period(from, to, long.b-long.a)
 	}
 	if guess <= 0 {
 		return
 	}
 	r.Height = height
-	template := r.shape(from, from+guess)
+	r.coarse = r.in.thinned(int(guess / coarsePoints / (to - from) * float64(long.b-long.a)))
+	template := r.in.shape(from, from+guess)
+	r.scanned = r.coarse.shape(from, from+guess*(points-1)/points)
 	for _, run := range runs {
 		r.cut(t[run.a], t[min(run.b, len(t)-1)], guess, template)
 	}
@@ -183,17 +184,17 @@ func compare(a, b float64) int {
 }
 
 // channels resamples what moves and what is held, each in shares of its top.
-func (r *Result) channels(a, b float64, n int) (out [][]float64) {
-	lo, hi := r.rows(a, b)
-	for _, v := range slices.Concat(r.in.Motion, r.in.Level) {
-		out = append(out, even(r.in.T[lo:hi], v[lo:hi], a, b, n))
+func (in Input) channels(a, b float64, n int) (out [][]float64) {
+	lo, hi := in.rows(a, b)
+	for _, v := range slices.Concat(in.Motion, in.Level) {
+		out = append(out, even(in.T[lo:hi], v[lo:hi], a, b, n))
 	}
 	return out
 }
 
 // rows returns the rows around a stretch, two at least.
-func (r *Result) rows(a, b float64) (lo, hi int) {
-	t := r.in.T
+func (in Input) rows(a, b float64) (lo, hi int) {
+	t := in.T
 	lo, _ = slices.BinarySearch(t, a)
 	hi, _ = slices.BinarySearch(t, b)
 	lo, hi = max(0, lo-1), min(len(t), hi+1)
@@ -204,9 +205,9 @@ func (r *Result) rows(a, b float64) (lo, hi int) {
 }
 
 // shape is a cycle as one vector to compare by, each channel without its mean and of length 1.
-func (r *Result) shape(a, b float64) []float64 {
-	out := make([]float64, 0, points*(len(r.in.Motion)+len(r.in.Level)))
-	for _, c := range r.channels(a, b, points) {
+func (in Input) shape(a, b float64) []float64 {
+	out := make([]float64, 0, points*(len(in.Motion)+len(in.Level)))
+	for _, c := range in.channels(a, b, points) {
 		mean, power := 0.0, 0.0
 		for _, x := range c {
 			mean += x / points
@@ -245,7 +246,7 @@ func (r *Result) cut(from, to, period float64, template []float64) {
 		if start+1.5*period <= to {
 			at = r.next(start, to, period, template)
 		}
-		if r.likeAt(start, period, template) >= leastHeight {
+		if r.in.likeAt(start, period, template) >= leastHeight {
 			r.Cycles = append(r.Cycles, Cycle{From: start, To: math.Min(at, end)})
 		}
 		start = at
@@ -253,36 +254,62 @@ func (r *Result) cut(from, to, period float64, template []float64) {
 }
 
 // likeAt compares what starts at s with the template.
-func (r *Result) likeAt(s, period float64, template []float64) float64 {
-	return likeness(r.shape(s, math.Min(s+period, r.in.T[len(r.in.T)-1])), template)
+func (in Input) likeAt(s, period float64, template []float64) float64 {
+	return likeness(in.shape(s, math.Min(s+period, in.T[len(in.T)-1])), template)
 }
 
-// next finds where the cycle after the one at start begins; of places alike, the one where it is expected.
+// next finds where the cycle after the one at start begins, by means of rows, and refines it
+// by the rows themselves; of places alike, the one where it is expected. Places lie as far
+// apart as points of the scanned template, so every channel is read once for all of them.
 func (r *Result) next(start, to, period float64, template []float64) float64 {
+	const places = 2 * drift * points
+	from := start + period*(1-drift)
+	windows := r.coarse.channels(from, from+period*(places+points)/points, places+points+1)
 	best, at := math.Inf(-1), start+period
-	for k := -32; k <= 32; k++ {
-		s := start + period + period*drift*float64(k)/32
+	for k := 0; k <= places; k++ {
+		s := from + period*float64(k)/points
 		if s+0.5*period > to {
 			break
 		}
-		if l := r.likeAt(s, period, template) - 0.02*math.Abs(float64(k))/32; l > best {
+		l := 0.0
+		for c, w := range windows {
+			l += correlation(w[k:k+points], r.scanned[c*points:(c+1)*points]) / float64(len(windows))
+		}
+		if l -= 0.02 * math.Abs(2*float64(k)/places-1); l > best {
 			best, at = l, s
 		}
 	}
 	return r.refined(at, period, template)
 }
 
+// correlation is that of values with a shape, which has no mean and length 1.
+func correlation(v, shape []float64) float64 {
+	sum, mean, power := 0.0, 0.0, 0.0
+	for i, x := range v {
+		sum, mean = sum+x*shape[i], mean+x
+	}
+	mean /= float64(len(v))
+	for _, x := range v {
+		power += (x - mean) * (x - mean)
+	}
+	if power == 0 {
+		return 0
+	}
+	return sum / math.Sqrt(power)
+}
+
 // refined finds the start between the places that were tried.
 func (r *Result) refined(at, period float64, template []float64) float64 {
-	step := period * drift / 32
+	step := period / points
+	here := r.in.likeAt(at, period, template)
 	for range 5 {
 		step /= 2
-		a, b, c := r.likeAt(at-step, period, template), r.likeAt(at, period, template), r.likeAt(at+step, period, template)
+		before, after := r.in.likeAt(at-step, period, template), r.in.likeAt(at+step, period, template)
 		switch {
-		case a > b && a >= c:
-			at -= step
-		case c > b:
-			at += step
+		case before > here && before >= after:
+			at, here = at-step, before
+		case after > here:
+			at, here = at+step, after
 		}
 	}
 	return at
@@ -298,7 +325,7 @@ func (r *Result) judge() {
 	var shapes [][]float64
 	var of []int
 	for i := 0; i < len(r.Cycles); i += stride {
-		shapes, of = append(shapes, r.shape(r.Cycles[i].From, r.Cycles[i].To)), append(of, i)
+		shapes, of = append(shapes, r.in.shape(r.Cycles[i].From, r.Cycles[i].To)), append(of, i)
 	}
 	best := math.Inf(-1)
 	for i, a := range shapes {
@@ -310,12 +337,12 @@ func (r *Result) judge() {
 			best, r.Typical = sum, of[i]
 		}
 	}
-	typical := r.shape(r.Cycles[r.Typical].From, r.Cycles[r.Typical].To)
+	typical := r.in.shape(r.Cycles[r.Typical].From, r.Cycles[r.Typical].To)
 	r.Extreme, r.Odd = 0, 0
 	var energy, length []float64
 	for i := range r.Cycles {
 		c := &r.Cycles[i]
-		c.Likeness = likeness(r.shape(c.From, c.To), typical)
+		c.Likeness = likeness(r.in.shape(c.From, c.To), typical)
 		if c.Energy() > r.Cycles[r.Extreme].Energy() {
 			r.Extreme = i
 		}
@@ -350,7 +377,7 @@ func spreadOf(v []float64) (s Spread) {
 func (r *Result) Overlay(channel []float64, n int) [][]float64 {
 	out := make([][]float64, 0, len(r.Cycles))
 	for _, c := range r.Cycles {
-		lo, hi := r.rows(c.From, c.To)
+		lo, hi := r.in.rows(c.From, c.To)
 		out = append(out, even(r.in.T[lo:hi], channel[lo:hi], c.From, c.To, n))
 	}
 	return out

@@ -33,7 +33,7 @@ func trapezoid(p, q, h float64) (up, down float64) {
 func (r *Result) energies() {
 	for i := range r.Cycles {
 		c := &r.Cycles[i]
-		lo, hi := r.rows(c.From, c.To)
+		lo, hi := r.in.rows(c.From, c.To)
 		var p []float64
 		if r.in.Power != nil {
 			p = r.in.Power[lo:hi]

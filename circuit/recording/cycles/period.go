@@ -33,8 +33,85 @@ func even(t, v []float64, a, b float64, n int) []float64 {
 	return out
 }
 
-// maxLagSamples bounds the transform; a stretch is resampled to so many points at most.
-const maxLagSamples = 1 << 16
+// A stretch is transformed by so many points at most, and a period found in it holds if it
+// has so many of them. Cycles are sought by so many means of rows a period. All are our choice.
+const (
+	maxLagSamples = 1 << 16
+	leastLag      = 16
+	fewPeriods    = 12
+	coarsePoints  = 2 * points
+)
+
+// period finds the period of a stretch of so many rows [s], and its height. It takes the whole stretch
+// by means of rows; where cycles are too short to be seen so, less and less of its middle. What
+// was found is looked at again in a few of its periods, row by row: it may be several cycles.
+func (in Input) period(from, to float64, rows int) (seconds, height float64) {
+	step := (to - from) / float64(rows)
+	thin := (rows + maxLagSamples - 1) / maxLagSamples
+	for lag := 0.0; ; thin = (thin + 7) / 8 {
+		seconds, lag, height = in.periodOf(from, to, rows, thin)
+		if thin == 1 || lag >= leastLag {
+			break
+		}
+	}
+	if fine := int(math.Ceil(fewPeriods * seconds / step / maxLagSamples)); seconds > 0 && fine < thin {
+		if s, _, h := in.periodOf(from, to, rows, fine); s > 0 {
+			return s, h
+		}
+	}
+	return seconds, height
+}
+
+// periodOf finds the period in the middle of a stretch by means of so many rows; lag is in means.
+func (in Input) periodOf(from, to float64, rows, thin int) (seconds, lag, height float64) {
+	span := min(rows, thin*maxLagSamples)
+	if span < rows {
+		middle, half := (from+to)/2, (to-from)/2*float64(span)/float64(rows)
+		from, to = middle-half, middle+half
+	}
+	n := span / thin
+	lag, height = period(autocorrelation(in.part(from, to).thinned(thin).channels(from, to, n)))
+	return lag * (to - from) / float64(n-1), lag, height
+}
+
+// part is a stretch of the rows.
+func (in Input) part(a, b float64) (out Input) {
+	lo, hi := in.rows(a, b)
+	out.T = in.T[lo:hi]
+	for _, v := range in.Motion {
+		out.Motion = append(out.Motion, v[lo:hi])
+	}
+	for _, v := range in.Level {
+		out.Level = append(out.Level, v[lo:hi])
+	}
+	return out
+}
+
+// thinned puts the mean of n rows in their place.
+func (in Input) thinned(n int) (out Input) {
+	if n < 2 {
+		return in
+	}
+	means := func(v []float64) []float64 {
+		m := make([]float64, 0, len(v)/n+1)
+		for i := 0; i < len(v); i += n {
+			k, sum := min(i+n, len(v)), 0.0
+			for _, x := range v[i:k] {
+				sum += x
+			}
+			m = append(m, sum/float64(k-i))
+		}
+		return m
+	}
+	out.T = means(in.T)
+	for _, v := range in.Motion {
+		out.Motion = append(out.Motion, means(v))
+	}
+	for _, v := range in.Level {
+		out.Level = append(out.Level, means(v))
+	}
+	return out
+}
 
 // autocorrelation returns that of several channels together, 1 at lag 0, each lag over
 // what overlaps, for lags up to half of the stretch.

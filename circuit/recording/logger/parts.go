@@ -1,6 +1,9 @@
 package logger
 
 import (
+	"context"
+	"crypto/sha256"
+	"encoding/hex"
 	"fmt"
 	"io"
 	"math"
@@ -46,6 +49,27 @@ func OpenSources(names []string, sizes []int64, reopen func(k int) (io.ReadClose
 		f.Size += sizes[k]
 	}
 	return f, f.ends()
+}
+
+// Sum returns the SHA-256 of files one after another, as a Recording has it, with progress and cancel as Import has them.
+func Sum(ctx context.Context, sizes []int64, open func(k int) (io.ReadCloser, error), progress func(done, total int64)) (string, error) {
+	src := &watched{sum: sha256.New(), ctx: ctx, progress: progress}
+	for _, n := range sizes {
+		src.total += n
+	}
+	for k := range sizes {
+		in, err := open(k)
+		if err != nil {
+			return "", err
+		}
+		src.in = in
+		_, err = io.Copy(io.Discard, src)
+		in.Close()
+		if err != nil {
+			return "", err
+		}
+	}
+	return hex.EncodeToString(src.sum.Sum(nil)), nil
 }
 
 // ends reads the start of the first part and the end of the last one.
