@@ -12,6 +12,7 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/circuit/logged"
 )
 
 // Format is the first line of an audit file: `format: barlitre/1`.
@@ -233,10 +234,10 @@ type File struct {
 
 	Axes     []duty.Axis
 	Duties   []*duty.Duty
-	Sources  []Source       // by duty; the zero Source where the points stand in the audit file
-	Imports  []*Import      // by duty; nil where no recipe says how its recording is read
-	Rates    [][]AxisRate   // by duty; how well a recording tells the energy of its axes
-	Stages   [][]duty.Stage // by duty: the phases that its tracks are computed from; nil where points are given
+	Sources  []Source         // by duty; the zero Source where the points stand in the audit file
+	Imports  []*Import        // by duty; nil where no recipe says how its recording is read
+	Rates    [][]logged.Rated // by duty; how well a recording tells the energy of its axes
+	Stages   [][]duty.Stage   // by duty: the phases that its tracks are computed from; nil where points are given
 	Circuits []CircuitEntry
 	Readings []Reading // of a site check
 
