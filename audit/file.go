@@ -14,6 +14,7 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/circuit/logged"
 )
 
 // Format is the first line of an audit file: `format: barlitre/1`.
@@ -263,10 +264,10 @@ type File struct {
 
 	Axes     []duty.Axis
 	Duties   []*duty.Duty
-	Sources  []Source       // by duty; the zero Source where the points stand in the audit file
-	Imports  []*Import      // by duty; nil where no recipe says how its recording is read
-	Rates    [][]AxisRate   // by duty; how well a recording tells the energy of its axes
-	Stages   [][]duty.Stage // by duty: the phases that its tracks are computed from; nil where points are given
+	Sources  []Source         // by duty; the zero Source where the points stand in the audit file
+	Imports  []*Import        // by duty; nil where no recipe says how its recording is read
+	Rates    [][]logged.Rated // by duty; how well a recording tells the energy of its axes
+	Stages   [][]duty.Stage   // by duty: the phases that its tracks are computed from; nil where points are given
 	Circuits []CircuitEntry
 	Calendar *Calendar // shifts and states of the year; nil = hours stand at the duties
 	Readings []Reading // of a site check

@@ -36,7 +36,9 @@ func (r *reader) alongside(s scope, first *logger.Recording, also entry) (*logge
 		return nil, nil
 	}
 	from, key := r.from, flowText(also.value)
+	from.Lock()
 	t := from.beside[key]
+	from.Unlock()
 	if t == nil {
 		t = keptRecording(first)
 		for i, n := range also.value.Content {
@@ -44,7 +46,9 @@ func (r *reader) alongside(s scope, first *logger.Recording, also entry) (*logge
 				return nil, nil
 			}
 		}
+		from.Lock()
 		from.beside = map[string]*recorded{key: t} // of one text only: an edit makes another
+		from.Unlock()
 	}
 	for _, a := range t.also {
 		if a.Expected != "" && a.Expected != a.SHA256 {

@@ -1,12 +1,9 @@
 package audit
 
-import (
-	"maps"
-	"slices"
-)
+import "slices"
 
 // Clone returns the same file, to be edited while this one is read elsewhere. Recordings are not read again.
 func (f *File) Clone() *File {
-	g, _ := parse(slices.Clone(f.data), f.open, f.Path, maps.Clone(f.tables))
+	g, _ := parse(slices.Clone(f.data), f.open, f.Path, f.tables)
 	return g
 }

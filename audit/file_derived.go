@@ -1,6 +1,7 @@
 package audit
 
 import (
+	"fmt"
 	"math"
 
 	"gopkg.in/yaml.v3"
@@ -12,16 +13,8 @@ import (
 	"barlitre/machines/units"
 )
 
-// The laws by which a track is derived, as files name them.
-const (
-	lawPosition = "speed of position"
-	lawFlow     = "speed of flow"
-	lawChambers = "chamber pressures"
-	lawMotor    = "motor pressures"
-	lawTurned   = "sign turned"
-)
-
-var laws = []string{lawPosition, lawFlow, lawChambers, lawMotor, lawTurned, logged.Scaled, logged.OfPower, logged.Constant}
+// laws by which a track is derived.
+var laws = []string{logged.OfPosition, logged.OfFlow, logged.Chambers, logged.OfMotor, logged.Turned, logged.Scaled, logged.OfPower, logged.Constant}
 
 // derivation reads one derived track.
 type derivation struct {
@@ -37,6 +30,7 @@ type derivation struct {
 // derived works tracks out from channels, each by its law.
 func (r *reader) derived(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.Node) (out []Derived) {
 	in := s.in("derived")
+	r.from.nextTurn()
 	for _, e := range r.entries(s, n, "derived") {
 		dim, ok := r.column(in, d, e.at, e.key)
 		if !ok {
@@ -47,17 +41,13 @@ func (r *reader) derived(s scope, d *duty.Duty, rec *logger.Recording, n *yaml.N
 			"displacement", "gear", "efficiency", "volumetric", "inertia", "factor", "offset", "power", "value")
 		v := &derivation{r, of, f, rec, e.value, dim, true}
 		before := len(r.found)
-		key := e.key + ": " + flowText(e.value)
-		r.from.Lock()
-		tr, done := r.from.derived[key]
-		r.from.Unlock()
+		key := fmt.Sprint(e.key, dim, flowText(e.value)) // the same words say another thing of another kind of axis
+		tr, done := r.from.derivedTrack(key)
 		if !done {
 			tr = v.track()
 		}
 		if len(r.found) == before && v.ok {
-			r.from.Lock()
-			r.from.derived[key] = tr
-			r.from.Unlock()
+			r.from.keepTrack(key, tr)
 			r.keep(d, e.key, tr.Values)
 			says := map[string]string{}
 			for key, x := range f {
@@ -85,19 +75,19 @@ func (v *derivation) track() channels.Track {
 	case logged.Constant:
 		return v.constant()
 	}
-	want := map[string][]units.Dim{lawPosition: {units.Velocity, units.AngularSpeed}, lawFlow: {units.Velocity, units.AngularSpeed}, lawChambers: {units.Force}, lawMotor: {units.Torque}, lawTurned: {v.dim}, logged.OfPower: {units.Force, units.Torque}}[law]
+	want := map[string][]units.Dim{logged.OfPosition: {units.Velocity, units.AngularSpeed}, logged.OfFlow: {units.Velocity, units.AngularSpeed}, logged.Chambers: {units.Force}, logged.OfMotor: {units.Torque}, logged.Turned: {v.dim}, logged.OfPower: {units.Force, units.Torque}}[law]
 	if v.dim != want[0] && v.dim != want[len(want)-1] {
 		v.bad(v.s, v.at, "law", "%q gives a %s, this track is a %s", law, want[0].Name(), v.dim.Name())
 		return channels.Track{}
 	}
 	switch law {
-	case lawPosition:
+	case logged.OfPosition:
 		return v.position(rotary)
-	case lawFlow:
+	case logged.OfFlow:
 		return v.flow(rotary)
-	case lawChambers:
+	case logged.Chambers:
 		return v.chambers()
-	case lawMotor:
+	case logged.OfMotor:
 		return v.motor()
 	case logged.OfPower:
 		return v.power(rotary)

@@ -15,9 +15,7 @@ import (
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/circuit/logged"
-	"barlitre/circuit/recording/channels"
 	"barlitre/circuit/recording/logger"
-	"barlitre/circuit/recording/rate"
 	"barlitre/machines/units"
 )
 
@@ -202,7 +200,7 @@ func (r *reader) recording(s scope, at *yaml.Node, names []string, recipe *yaml.
 
 // keptRecording has room for what is worked out of a recording.
 func keptRecording(rec *logger.Recording) *recorded {
-	return &recorded{rec: rec, channels: map[string][]float64{}, derived: map[string]channels.Track{}, rates: map[rateOf]rate.Check{}}
+	return &recorded{rec: rec, channels: map[string][]float64{}}
 }
 
 // importsKept is how many imports of one file are kept: of duties that read it in other ways, and of one undone.

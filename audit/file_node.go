@@ -2,6 +2,7 @@ package audit
 
 import (
 	"fmt"
+	"maps"
 	"regexp"
 	"slices"
 	"strings"
@@ -245,7 +246,7 @@ func parse(data []byte, open Open, path string, tables map[string]*recorded) (*F
 
 // parseTree is parse for a text whose node tree is made already.
 func parseTree(root *yaml.Node, data []byte, open Open, path string, tables map[string]*recorded, how Importing) (*File, []circuit.Finding) {
-	f := &File{Path: path, data: data, root: root, open: open, tables: tables, how: how}
+	f := &File{Path: path, data: data, root: root, open: open, tables: maps.Clone(tables), how: how} // other files may be copied meanwhile
 	r := &reader{file: f, axes: map[string]bool{}, blocks: map[string]bool{}}
 	if !r.plain(root) || !r.top(root) {
 		return nil, r.found

@@ -12,9 +12,7 @@ import (
 
 	"barlitre/circuit/duty"
 	"barlitre/circuit/recording"
-	"barlitre/circuit/recording/channels"
 	"barlitre/circuit/recording/logger"
-	"barlitre/circuit/recording/rate"
 	"barlitre/machines"
 	"barlitre/machines/units"
 )
@@ -145,9 +143,8 @@ type recorded struct {
 	sync.Mutex       // of what is converted
 	*recording.Table // nil where it was imported by a recipe
 	rec              *logger.Recording
-	channels         map[string][]float64      // of rec, by column, SI
-	derived          map[string]channels.Track // of rec, by what the file says of them
-	rates            map[rateOf]rate.Check
+	channels         map[string][]float64 // of rec, by column, SI
+	worked           worked
 	also             []Also                // whose channels rec has too
 	beside           map[string]*recorded  // rec with further recordings, by what the audit says of them
 	in               map[string]units.Unit // by column: the unit that its values were in before they were converted
@@ -226,6 +223,6 @@ func (r *reader) table(s scope, n *yaml.Node, key, name string) *recorded {
 	if t == nil {
 		return nil
 	}
-	f.tables[name] = &recorded{Table: t, in: map[string]units.Unit{}, si: map[columnIn][]float64{}, rates: map[rateOf]rate.Check{}}
+	f.tables[name] = &recorded{Table: t, in: map[string]units.Unit{}, si: map[columnIn][]float64{}}
 	return f.tables[name]
 }

@@ -6,52 +6,9 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/circuit/logged"
 	"barlitre/circuit/recording/logger"
-	"barlitre/circuit/recording/rate"
 )
-
-// rateRows bounds the rows by which a rate is judged; of a longer recording it is those in its middle.
-const rateRows = 400_000
-
-// AxisRate is what the rate of a recording means for the energy of an axis.
-type AxisRate struct {
-	Axis string
-	rate.Check
-}
-
-// rateOf tells checks apart: the columns they are of, and what else they hang on.
-type rateOf struct {
-	load, speed *float64
-	cycle       float64
-	means       bool
-}
-
-// rated checks for each axis that has a speed and a load whether a recording is fast
-// enough; what was checked once is kept, for an edit reads the audit file again.
-func (t *recorded) rated(d *duty.Duty, axes []duty.Axis, means bool) (out []AxisRate) {
-	cycle := 0.0
-	if d.Repeats {
-		cycle = d.Cycle()
-	}
-	for _, a := range axes {
-		v, load := d.Track(a.Name, duty.Speed), d.Track(a.Name, duty.Load)
-		if v == nil || load == nil {
-			continue
-		}
-		of := rateOf{&load.Values[0], &v.Values[0], cycle, means}
-		c, done := t.rates[of]
-		if !done {
-			from, to := 0, len(d.Time)
-			if to > rateRows {
-				from, to = to/2-rateRows/2, to/2+rateRows/2
-			}
-			c = rate.Of(d.Time[from:to], load.Values[from:to], v.Values[from:to], means, cycle)
-			t.rates[of] = c
-		}
-		out = append(out, AxisRate{a.Name, c})
-	}
-	return out
-}
 
 // rate keeps and tells whether the rows of a recording tell the energy of its axes.
 func (r *reader) rate(s scope, d *duty.Duty, f map[string]entry, i int) {
@@ -65,7 +22,17 @@ func (r *reader) rate(s scope, d *duty.Duty, f map[string]entry, i int) {
 			means = means || c.Kind == logger.Mean
 		}
 	}
-	r.file.Rates[i] = r.from.rated(d, r.file.Axes, means)
+	cycle := 0.0
+	if d.Repeats {
+		cycle = d.Cycle()
+	}
+	key := fmt.Sprint(cycle, means, r.file.Axes)
+	for _, k := range []string{"columns", "derived", "part"} { // what else tells which rows are which track
+		if e, ok := f[k]; ok {
+			key += "\x00" + k + flowText(e.value)
+		}
+	}
+	r.file.Rates[i] = r.from.rated(key, func() []logged.Rated { return logged.Rates(d, means, cycle) })
 	for _, a := range r.file.Rates[i] {
 		if a.Warns {
 			r.told(s, circuit.Warns, at.value, "axis "+a.Axis+": "+strings.Join(a.Remarks, "; "))

@@ -59,7 +59,7 @@ func (p *Page) Changed(w station.What) {
 	if !w.Has(station.Solution | station.Advice | station.Settings | station.Model) {
 		return
 	}
-	if p.ctx.Solution() != nil {
+	if w.Has(station.Solution|station.Settings|station.Model) && p.ctx.Solution() != nil { // not on the end of advice: it may have been cancelled
 		p.ctx.Doc().Advise(p.ctx.System())
 	}
 	p.progress()

@@ -61,7 +61,7 @@ func (p *Page) Changed(w station.What) {
 		return
 	}
 	doc := p.ctx.Doc()
-	if p.ctx.Solution() != nil {
+	if w.Has(station.Solution|station.Settings|station.Model) && p.ctx.Solution() != nil { // not on the end of advice: it may have been cancelled
 		doc.Advise(p.ctx.System())
 	}
 	running, done, total, err := doc.Advising()

@@ -21,12 +21,16 @@ const rateRows = 400_000
 // Rates checks each axis that has motion and load. means says that rows are means over
 // their intervals; cycle [s] is 0 where none is known.
 func Rates(d *duty.Duty, means bool, cycle float64) (out []Rated) {
-	from, to := 0, len(d.Time)
-	if to > rateRows {
-		from, to = to/2-rateRows/2, to/2+rateRows/2
+	if n := len(d.Time); n > rateRows {
+		from, to := n/2-rateRows/2, n/2+rateRows/2
+		middle := duty.Duty{Time: d.Time[from:to], Tracks: slices.Clone(d.Tracks)}
+		for i, t := range middle.Tracks {
+			middle.Tracks[i].Values = t.Values[from:to]
+		}
+		d = &middle
 	}
 	for _, w := range Works(d) {
-		out = append(out, Rated{w.Axis, rate.Of(d.Time[from:to], w.Load[from:to], w.Speed[from:to], means, cycle)})
+		out = append(out, Rated{w.Axis, rate.Of(d.Time, w.Load, w.Speed, means, cycle)})
 	}
 	return out
 }
@@ -34,20 +38,16 @@ func Rates(d *duty.Duty, means bool, cycle float64) (out []Rated) {
 // Cycles finds cycles and states: by the speeds of the axes, their loads, and the power that
 // both make.
 func Cycles(d *duty.Duty) (*cycles.Result, error) {
-	in := cycles.Input{T: d.Time}
-	for _, w := range Works(d) {
+	in, works := cycles.Input{T: d.Time}, Works(d)
+	for _, w := range works {
 		in.Motion = append(in.Motion, w.Speed)
 		if slices.Min(w.Load) != slices.Max(w.Load) { // a load that is the same throughout tells no cycle
 			in.Level = append(in.Level, w.Load)
 		}
-		if in.Power == nil {
-			in.Power = make([]float64, len(d.Time))
-		}
-		for i, p := range w.Power {
-			in.Power[i] += p
-		}
 	}
-	if in.Motion == nil {
+	if len(works) > 0 {
+		in.Power = Power(works)
+	} else {
 		for _, t := range d.Tracks {
 			if t.What == duty.Speed {
 				in.Motion = append(in.Motion, t.Values)
@@ -57,10 +57,10 @@ func Cycles(d *duty.Duty) (*cycles.Result, error) {
 	return cycles.Find(in, cycles.Options{})
 }
 
-// Power is what all axes do at each row [W].
-func Power(d *duty.Duty) []float64 {
-	out := make([]float64, len(d.Time))
-	for _, w := range Works(d) {
+// Power is what all axes do at each row [W]; of one axis at least.
+func Power(works []Moved) []float64 {
+	out := make([]float64, len(works[0].Power))
+	for _, w := range works {
 		for i, p := range w.Power {
 			out[i] += p
 		}

@@ -3,6 +3,7 @@ package logged
 import (
 	"fmt"
 	"math"
+	"sort"
 	"strings"
 
 	"barlitre/circuit/duty"
@@ -68,14 +69,7 @@ func (p Part) Cut(d *duty.Duty) error {
 
 // at is the value at x, straight between rows.
 func at(t, v []float64, x float64) float64 {
-	lo, hi := 0, len(t)
-	for lo < hi {
-		if mid := (lo + hi) / 2; t[mid] < x {
-			lo = mid + 1
-		} else {
-			hi = mid
-		}
-	}
+	lo := sort.SearchFloat64s(t, x)
 	if lo == 0 || lo == len(t) || t[lo] == t[lo-1] {
 		return v[min(lo, len(t)-1)]
 	}

@@ -22,8 +22,8 @@ const (
 func stacked(r *found.Result, d *duty.Duty, p *Page) figures.Plot {
 	kW := units.Preferred(units.Power, p.ctx.System())
 	plot := figures.Plot{Axis: "time into the cycle", AxisUnit: "s"}
-	if len(logged.Works(d)) > 0 {
-		plot.Lanes = append(plot.Lanes, stackLane(r, p.extreme(), logged.Power(d), "power", kW))
+	if works := logged.Works(d); len(works) > 0 {
+		plot.Lanes = append(plot.Lanes, stackLane(r, p.extreme(), logged.Power(works), "power", kW))
 	}
 	for _, t := range d.Tracks {
 		if t.What == duty.Speed && len(plot.Lanes) < stackLanes {
