@@ -13,6 +13,7 @@ import (
 	"strings"
 	"time"
 
+	"barlitre/app/station"
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
 	"barlitre/audit/pdf"
@@ -240,25 +241,10 @@ func (c *auditCall) writeJSON(results []*audit.Result, out io.Writer) error {
 	return writeWhole(c.json, write)
 }
 
-// writeWhole writes a file completely or leaves what was there.
+// writeWhole writes a file completely or leaves what was there; its folder is made.
 func writeWhole(path string, write func(io.Writer) error) error {
 	if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
 		return err
 	}
-	f, err := os.CreateTemp(filepath.Dir(path), "."+filepath.Base(path)+"-*")
-	if err != nil {
-		return err
-	}
-	defer os.Remove(f.Name())
-	err = write(f)
-	if closed := f.Close(); err == nil {
-		err = closed
-	}
-	if err == nil {
-		err = os.Chmod(f.Name(), 0o644)
-	}
-	if err == nil {
-		err = os.Rename(f.Name(), path)
-	}
-	return err
+	return station.WriteWhole(path, write)
 }

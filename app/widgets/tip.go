@@ -67,14 +67,6 @@ func (t *Tips) hide() {
 	}
 }
 
-// ShownTip is the tooltip that shows, or "".
-func ShownTip() string {
-	if tips == nil {
-		return ""
-	}
-	return tips.shown
-}
-
 // TipButton is a button with a tooltip.
 type TipButton struct {
 	widget.Button

@@ -110,10 +110,6 @@ func (w words) money(x float64) string {
 	return units.Number(x, 4) + " " + w.currency
 }
 
-func (w words) power(x float64) string {
-	return units.Format(x, units.Preferred(units.Power, w.system), 3)
-}
-
 func seconds(t float64) string { return units.Format(t, units.Preferred(units.Time, units.Metric), 3) }
 
 func (w words) both(s Saving) string {

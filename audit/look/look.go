@@ -188,9 +188,8 @@ func either(d *audit.DutyRun, a, b string) *audit.Track {
 }
 
 // ValueOf is the value of a track at an instant of a course.
-
 func ValueOf(k *audit.Track, s *Course, i int) float64 {
-	if len(k.T) == len(s.T) {
+	if i < len(k.T) && k.T[i] == s.T[i] { // a thinned plot keeps other instants of each
 		return k.V[i]
 	}
 	return k.At(s.T[i])

@@ -93,8 +93,6 @@ func packed(v []float64, decimals int) (k chunk, ok bool) {
 	return k, true
 }
 
-func (c *column) len() int { return len(c.full)*chunkRows + len(c.now) }
-
 func (c *column) at(i int) float64 {
 	k, j := i/chunkRows, i%chunkRows
 	if k == len(c.full) {
