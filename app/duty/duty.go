@@ -44,6 +44,8 @@ type Station struct {
 	shown  *cycle.Duty // of the file that is shown
 	of     string      // name of the duty in the table
 	tracks []track
+
+	courses courses // what the plot draws from
 }
 
 // New makes the station.
@@ -73,6 +75,7 @@ func (s *Station) build() {
 	s.source.Wrapping = fyne.TextWrapWord
 	s.plot = widgets.Name(widgets.NewClockPlot(fyne.NewSize(300, 120), s.ctx.Palette), "duty.plot")
 	s.plot.Moved = s.ctx.SetClock
+	s.plot.Zooms = true
 	s.plot.Value = s.valueAt
 	s.plot.Points = plotPoints{s}
 	s.plot.Format = func(t float64) string { return s.ctx.Text(t, units.Time, 4) }
@@ -101,7 +104,9 @@ func (s *Station) build() {
 func (s *Station) lay() fyne.CanvasObject {
 	pick := container.New(widgets.Wide(220), s.picker)
 	head := container.NewBorder(nil, nil, pick, nil, s.facts)
-	plot := container.NewStack(s.ground, container.NewVScroll(widgets.Spaced(s.plot)))
+	lanes := container.NewVScroll(widgets.Spaced(s.plot))
+	s.plot.Outer = lanes.Scrolled
+	plot := container.NewStack(s.ground, lanes)
 	s.upper, s.both = plot, container.NewVSplit(plot, s.pages.content)
 	s.both.Offset = 0.5
 	return container.NewBorder(head, nil, nil, nil, s.both)
@@ -155,6 +160,9 @@ func (s *Station) reload() {
 	setText(s.facts, s.factsOf(d))
 	s.ground.FillColor = s.ctx.Palette().Card
 	s.ground.Refresh()
+	if d.Name != s.of { // another duty: all of it is shown
+		s.plot.Fit()
+	}
 	s.fillPlot(d)
 	s.fillTable(d)
 	s.pages.fill()
