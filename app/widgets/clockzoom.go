@@ -146,6 +146,6 @@ func (c *ClockPlot) paintWindow(g pen.Pen, pal figures.Palette) {
 	whole := c.whole[1] - c.whole[0]
 	x0 := c.area.X + c.area.W*(c.plot.From-c.whole[0])/whole
 	w := math.Max(3, c.area.W*(c.plot.To-c.plot.From)/whole)
-	pen.Rect(g, c.area.X, 1, c.area.W, 3, pal.Edge, pen.Stroke{})
-	pen.Rect(g, math.Min(x0, c.area.X+c.area.W-w), 1, w, 3, pal.Gain, pen.Stroke{C: color.NRGBA{}})
+	pen.Rect(g, c.area.X, 3, c.area.W, 3, pal.Edge, pen.Stroke{})
+	pen.Rect(g, math.Min(x0, c.area.X+c.area.W-w), 3, w, 3, pal.Gain, pen.Stroke{C: color.NRGBA{}})
 }

@@ -9,27 +9,34 @@ import (
 )
 
 // Pyramid finds the lowest and highest value of any stretch of a long course without reading all of it: of every block of
-// points it knows where they lie, of every few blocks again, and so on. It is made once and keeps the course, which must not
+// points it knows them, of every few blocks again, and so on. It is made once and keeps the course, which must not
 // change, not a copy. It may be read by several goroutines.
 type Pyramid struct {
 	x, y   []float64
 	levels [][]peaks
 }
 
-// peaks is where in the course a block has its lowest and highest value; low < 0: it has none that can be drawn.
-type peaks struct{ low, high int32 }
+// peaks are the lowest and highest value of a block. They stand here and not only their places, for looking them up all
+// over a long course costs more than all else.
+type peaks struct{ low, high float64 }
+
+// none are the peaks of a block without a value that can be drawn.
+var none = peaks{math.Inf(1), math.Inf(-1)}
+
+// any reports whether there is a value.
+func (a peaks) any() bool { return a.low <= a.high }
+
+// join puts two blocks together.
+func (a peaks) join(b peaks) peaks { return peaks{min(a.low, b.low), max(a.high, b.high)} }
 
 const (
 	pyramidBlock = 32 // points of a block of the lowest level
 	pyramidStep  = 8  // blocks that make one of the next
 )
 
-// NewPyramid makes the pyramid of a course; nil where x falls, is no number or the course is too long to be numbered. The longer of x and y is cut.
+// NewPyramid makes the pyramid of a course; nil where x falls or is no number. The longer of x and y is cut.
 func NewPyramid(x, y []float64) *Pyramid {
 	n := min(len(x), len(y))
-	if n > math.MaxInt32 {
-		return nil
-	}
 	for i := range n {
 		if !finite(x[i]) || i > 0 && x[i] < x[i-1] {
 			return nil
@@ -38,20 +45,18 @@ func NewPyramid(x, y []float64) *Pyramid {
 	p := &Pyramid{x: x[:n:n], y: y[:n:n]}
 	level := make([]peaks, 0, n/pyramidBlock+1)
 	for from := 0; from < n; from += pyramidBlock {
-		e := peaks{-1, -1}
+		e := none
 		for i := from; i < min(from+pyramidBlock, n); i++ {
-			if finite(y[i]) {
-				e = p.join(e, peaks{int32(i), int32(i)})
-			}
+			e = e.join(p.point(i))
 		}
 		level = append(level, e)
 	}
 	for p.levels = append(p.levels, level); len(level) > pyramidStep; p.levels = append(p.levels, level) {
 		next := make([]peaks, 0, len(level)/pyramidStep+1)
 		for from := 0; from < len(level); from += pyramidStep {
-			e := peaks{-1, -1}
+			e := none
 			for _, b := range level[from:min(from+pyramidStep, len(level))] {
-				e = p.join(e, b)
+				e = e.join(b)
 			}
 			next = append(next, e)
 		}
@@ -60,21 +65,12 @@ func NewPyramid(x, y []float64) *Pyramid {
 	return p
 }
 
-// join puts two blocks together.
-func (p *Pyramid) join(a, b peaks) peaks {
-	switch {
-	case a.low < 0:
-		return b
-	case b.low < 0:
-		return a
+// point is a block of one point.
+func (p *Pyramid) point(i int) peaks {
+	if v := p.y[i]; finite(v) {
+		return peaks{v, v}
 	}
-	if p.y[b.low] < p.y[a.low] {
-		a.low = b.low
-	}
-	if p.y[b.high] > p.y[a.high] {
-		a.high = b.high
-	}
-	return a
+	return none
 }
 
 // Len is the number of points.
@@ -91,32 +87,29 @@ func (p *Pyramid) within(from, to float64) (i, j int) {
 func (p *Pyramid) Range(from, to float64) (low, high float64, ok bool) {
 	i, j := p.within(from, to)
 	e := p.between(i, j)
-	if e.low < 0 {
+	if !e.any() {
 		return 0, 0, false
 	}
-	return p.y[e.low], p.y[e.high], true
+	return e.low, e.high, true
 }
 
 // between returns the peaks of points i to j−1: of single points up to the next whole block on either side, then of blocks up
 // to the next whole block of blocks, and so on.
 func (p *Pyramid) between(i, j int) peaks {
-	e := peaks{-1, -1}
+	e := none
 	unit := func(level, k int) peaks {
-		switch {
-		case level >= 0:
-			return p.levels[level][k]
-		case finite(p.y[k]):
-			return peaks{int32(k), int32(k)}
+		if level < 0 {
+			return p.point(k)
 		}
-		return peaks{-1, -1}
+		return p.levels[level][k]
 	}
 	for level, group := -1, pyramidBlock; i < j; level, group = level+1, pyramidStep {
 		last := level+1 >= len(p.levels)
 		for ; i < j && (last || i%group != 0); i++ {
-			e = p.join(e, unit(level, i))
+			e = e.join(unit(level, i))
 		}
 		for ; i < j && j%group != 0; j-- {
-			e = p.join(e, unit(level, j-1))
+			e = e.join(unit(level, j-1))
 		}
 		i, j = i/group, j/group
 	}
@@ -165,8 +158,8 @@ func (l *Long) columns(from, to float64, n int) [][]column {
 	for c := range n {
 		_, j := l.within(l.X.ToSI(from), l.X.ToSI(from+width*float64(c+1)))
 		switch e := l.between(i, j); {
-		case e.low >= 0:
-			run = append(run, column{from + width*(float64(c)+0.5), l.Y.FromSI(l.y[e.low]), l.Y.FromSI(l.y[e.high])})
+		case e.any():
+			run = append(run, column{from + width*(float64(c)+0.5), l.Y.FromSI(e.low), l.Y.FromSI(e.high)})
 		case j > i && len(run) > 0:
 			out, run = append(out, run), nil
 		}
