@@ -16,8 +16,7 @@ type Pyramid struct {
 	levels [][]peaks
 }
 
-// peaks are the lowest and highest value of a block. They stand here and not only their places, for looking them up all
-// over a long course costs more than all else.
+// peaks are the lowest and highest value of a block.
 type peaks struct{ low, high float64 }
 
 // none are the peaks of a block without a value that can be drawn.
