@@ -48,6 +48,8 @@ type Station struct {
 	shown  *cycle.Duty // of the file that is shown
 	of     string      // name of the duty in the table
 	tracks []track
+
+	courses courses // what the plot draws from
 }
 
 // New makes the station.
@@ -77,6 +79,7 @@ func (s *Station) build() {
 	s.source.Wrapping = fyne.TextWrapWord
 	s.plot = widgets.Name(widgets.NewClockPlot(fyne.NewSize(300, 120), s.ctx.Palette), "duty.plot")
 	s.plot.Moved = s.ctx.SetClock
+	s.plot.Zooms = true
 	s.plot.Value = s.valueAt
 	s.plot.Points = plotPoints{s}
 	s.plot.Format = func(t float64) string { return s.ctx.Text(t, units.Time, 4) }
@@ -107,7 +110,9 @@ func (s *Station) build() {
 func (s *Station) lay() fyne.CanvasObject {
 	pick := container.New(widgets.Wide(220), s.picker)
 	head := container.NewBorder(nil, nil, pick, nil, s.facts)
-	plot := container.NewStack(s.ground, container.NewVScroll(widgets.Spaced(s.plot)))
+	lanes := container.NewVScroll(widgets.Spaced(s.plot))
+	s.plot.Outer = lanes.Scrolled
+	plot := container.NewStack(s.ground, lanes)
 	s.upper, s.both = plot, container.NewVSplit(plot, s.pages.content)
 	s.both.Offset = 0.5
 	return container.NewBorder(head, nil, nil, nil, s.both)
@@ -164,6 +169,9 @@ func (s *Station) reload() {
 	setText(s.facts, s.factsOf(d))
 	s.ground.FillColor = s.ctx.Palette().Card
 	s.ground.Refresh()
+	if d.Name != s.of { // another duty: all of it is shown
+		s.plot.Fit()
+	}
 	s.fillPlot(d)
 	s.fillTable(d)
 	s.pages.fill()
@@ -260,6 +268,7 @@ func ofDuty(f circuit.Finding) bool { return f.Duty != "" && f.Block == "" }
 func (s *Station) Help() string {
 	return "A duty cycle says what each axis of the machine must do over time. All circuits are balanced over the same duties, so what they do at the load can be compared.\n\n" +
 		"Pick a duty at the top. The plot shows every track; click or drag in it to move the clock, or use the arrow keys once it has the focus. The values at the clock stand beside the line.\n\n" +
+		"The wheel zooms the plot at the pointer, + and − about the clock; with Shift the wheel or the arrow keys pan, as does a drag with the middle button, and F or 0 shows all. With Ctrl the wheel scrolls the lanes. A long recording is drawn as the lowest and highest value of each column, so no peak is lost.\n\n" +
 		"The table holds the points: one row a time stamp, one column a track, linear in between; two rows with one time are a step. Click a cell twice, or press Enter or F2, or just type. " +
 		"A bare number is in the unit of the column; another unit may be typed with it, such as “150 mm/s”. Decimal comma and point are both understood. " +
 		"Enter takes the value; Escape brings the old one back. What is refused stays in its cell, marked, with the reason below. A block of cells can be pasted from a spreadsheet.\n\n" +
@@ -268,6 +277,7 @@ func (s *Station) Help() string {
 		"On the right: name, hours a year and time step of the duty, and whether it repeats. Below, the axes of the machine: name one and press Enter, say what it moves, and tick what the duty gives of it. Of speed or position, load, and command exactly two are given; the balance finds the third. " +
 		"Everything here is one step of undo.\n\n" +
 		"Phases is the other way to a cycle: one row a phase with how long it lasts, the stroke or speed and the load of each axis; the tracks are computed so that strokes are met exactly. A usual duty gives invented numbers to begin with. Turn into points makes a table of it. Where strokes do not close, a button beside the note scales the way back.\n\n" +
+		"Year says how the 8760 hours fall to work, idle, hold and off. Without a calendar each duty has its typed hours. Begin a shift calendar takes shifts with begin, end, days and breaks, the weeks worked and planned stops; a share of the shifts, or hours, may be idle or hold, and what is left is work. Below, say which duty stands for which state, with its share or its hours. A duty with hours of its own beside the calendar runs while the machine would be off. What the electric supply draws while off is booked, too. The oil temperature follows these shifts.\n\n" +
 		"Speed above zero extends a cylinder or hoists; a load above zero resists that. A duty that was read from a CSV file is changed in that file.\n\n" +
 		intake.Help + "\n\n" +
 		"The notes tell whether the strokes close, below which speed an axis counts as standing, and what was found."

@@ -16,8 +16,7 @@ type track struct {
 	what   string
 	says   string // asked or measured
 	unit   units.Unit
-	values []float64   // SI
-	course audit.Track // values over time, thinned for plots
+	values []float64 // SI
 }
 
 // tracksOf returns time and tracks, axis by axis as the file lists them, then the
@@ -35,7 +34,7 @@ func (s *Station) tracksOf(d *cycle.Duty) []track {
 		if t.What.Measured() {
 			says = "measured"
 		}
-		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), says: says, unit: u, values: t.Values, course: audit.CourseOf(d, t)})
+		out = append(out, track{name: t.Of + "." + t.What.String(), of: t.Of, what: t.What.String(), says: says, unit: u, values: t.Values})
 	}
 	for _, a := range s.ctx.Doc().File().Axes {
 		known[a.Name] = true
@@ -55,13 +54,27 @@ func (s *Station) tracksOf(d *cycle.Duty) []track {
 
 func (s *Station) fillPlot(d *cycle.Duty) {
 	p := figures.Plot{Phases: figures.PhasesOf(d), Axis: "time", AxisUnit: s.tracks[0].unit.Label()}
-	for _, t := range s.tracks[1:] {
+	if n := len(d.Time); n > 0 {
+		p.From, p.To = s.tracks[0].unit.FromSI(d.Time[0]), s.tracks[0].unit.FromSI(d.Time[n-1])
+	}
+	courses := s.courses.of(d, s.tracks[1:], func() {
+		if s.shown == d {
+			s.fillPlot(d)
+		}
+	})
+	for i, t := range s.tracks[1:] {
 		role := figures.RoleGain
 		if t.what == cycle.Load.String() {
 			role = figures.RoleInk
 		}
-		p.Lanes = append(p.Lanes, figures.Lane{Title: t.of + " " + t.what, Unit: t.unit.Label(), Zero: true,
-			Series: []figures.Series{{Name: t.says, X: inUnit(t.course.T, s.tracks[0].unit), Y: inUnit(t.course.V, t.unit), Role: role}}})
+		lane := figures.Lane{Title: t.of + " " + t.what, Unit: t.unit.Label(), Zero: true}
+		if c := courses[i]; c != nil {
+			lane.Series = []figures.Series{{Name: t.says, Long: &figures.Long{Pyramid: c, X: s.tracks[0].unit, Y: t.unit}, Role: role}}
+		} else if s.courses.cannot(t) { // its times are at fault: what can be drawn is
+			c := audit.CourseOf(d, cycle.Track{Of: t.of, Values: t.values})
+			lane.Series = []figures.Series{{Name: t.says, X: inUnit(c.T, s.tracks[0].unit), Y: inUnit(c.V, t.unit), Role: role}}
+		}
+		p.Lanes = append(p.Lanes, lane)
 	}
 	s.plot.SetMin(fyne.NewSize(300, float32(60+62*len(p.Lanes))))
 	s.plot.SetPlot(p)

@@ -244,6 +244,9 @@ func (r *sectionRow) fill(own, holds audit.HeatSection, oil *circuit.Conditions)
 	default:
 		r.fillNumber(own, holds, oil)
 	}
+	if f := r.s.ctx.Doc().File(); f != nil && f.Calendar != nil && audit.HeatShiftKey(r.key.Key) {
+		r.note.SetText("not used: the shifts of the calendar hold, see Duty, Year")
+	}
 }
 
 // say writes the note of a row that has no field.

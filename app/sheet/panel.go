@@ -56,6 +56,7 @@ func newPanel(s *Station) *panel {
 	p.newCompare()
 	p.list = container.New(tight{})
 	p.scroll = container.NewVScroll(container.New(edges{}, p.list))
+	p.live.plot.Outer = p.scroll.Scrolled
 	top := container.New(tight{}, p.head, p.compareLine, p.links)
 	inner := container.NewBorder(top, nil, nil, nil, p.scroll)
 	p.content = container.NewStack(p.paper, container.New(inset{4}, inner))

@@ -9,6 +9,10 @@ import (
 
 // MouseDown moves the clock.
 func (c *ClockPlot) MouseDown(ev *desktop.MouseEvent) {
+	if ev.Button == desktop.MouseButtonTertiary && c.zoomed {
+		c.panned = &ev.Position.X
+		return
+	}
 	if ev.Button != desktop.MouseButtonPrimary {
 		return
 	}
@@ -24,11 +28,15 @@ func (c *ClockPlot) MouseDown(ev *desktop.MouseEvent) {
 }
 
 // MouseUp lets the clock go.
-func (c *ClockPlot) MouseUp(*desktop.MouseEvent) { c.held = false }
+func (c *ClockPlot) MouseUp(*desktop.MouseEvent) { c.held, c.panned = false, nil }
 
 // Dragged moves the clock on.
 func (c *ClockPlot) Dragged(ev *fyne.DragEvent) {
 	switch {
+	case c.panned != nil:
+		x := ev.Position.X
+		c.panBy(float64(*c.panned - x))
+		c.panned = &x
 	case c.touched != nil:
 		c.dragPoint(ev.Position)
 	case c.held:
@@ -38,7 +46,7 @@ func (c *ClockPlot) Dragged(ev *fyne.DragEvent) {
 
 // DragEnd lets the clock go.
 func (c *ClockPlot) DragEnd() {
-	c.held = false
+	c.held, c.panned = false, nil
 	c.endPoint()
 }
 
@@ -57,10 +65,20 @@ func (c *ClockPlot) FocusGained() { c.focused = true; c.raster.Refresh() }
 // FocusLost is the end of it.
 func (c *ClockPlot) FocusLost() { c.focused = false; c.raster.Refresh() }
 
-// TypedRune is for text; a plot takes none.
-func (c *ClockPlot) TypedRune(rune) {}
+// TypedRune zooms: + and − about the clock, F or 0 shows all.
+func (c *ClockPlot) TypedRune(r rune) {
+	switch {
+	case !c.Zooms:
+	case r == '+':
+		c.zoomAt(c.middle(), plotZoomStep)
+	case r == '-':
+		c.zoomAt(c.middle(), 1/plotZoomStep)
+	case r == 'f' || r == 'F' || r == '0':
+		c.Fit()
+	}
+}
 
-// TypedKey moves the clock: arrows by 1/200 of what is shown, page keys by a twentieth.
+// TypedKey moves the clock: arrows by 1/200 of what is shown, page keys by a twentieth; with Shift the arrows pan.
 func (c *ClockPlot) TypedKey(k *fyne.KeyEvent) {
 	if (k.Name == fyne.KeyDelete || k.Name == fyne.KeyBackspace) && c.removePoint() {
 		return
@@ -69,9 +87,13 @@ func (c *ClockPlot) TypedKey(k *fyne.KeyEvent) {
 		return
 	}
 	span := c.area.To - c.area.From
+	if shift := modifiers()&fyne.KeyModifierShift != 0; shift && c.zoomed && (k.Name == fyne.KeyLeft || k.Name == fyne.KeyRight) {
+		c.pan(map[fyne.KeyName]float64{fyne.KeyLeft: -span / 10, fyne.KeyRight: span / 10}[k.Name])
+		return
+	}
 	to := map[fyne.KeyName]float64{fyne.KeyLeft: c.clock - span/200, fyne.KeyRight: c.clock + span/200,
-		fyne.KeyPageUp: c.clock - span/20, fyne.KeyPageDown: c.clock + span/20, fyne.KeyHome: c.area.From, fyne.KeyEnd: c.area.To}
+		fyne.KeyPageUp: c.clock - span/20, fyne.KeyPageDown: c.clock + span/20, fyne.KeyHome: c.whole[0], fyne.KeyEnd: c.whole[1]}
 	if t, ok := to[k.Name]; ok {
-		c.Moved(math.Max(c.area.From, math.Min(c.area.To, t)))
+		c.Moved(math.Max(c.whole[0], math.Min(c.whole[1], t)))
 	}
 }

@@ -22,7 +22,12 @@ type ClockPlot struct {
 	Value   func(lane int, t float64) string // what stands beside the line; nil = nothing
 	Format  func(t float64) string           // the clock in words, above the line; nil = none
 	Points  PlotPoints                       // that can be dragged; nil = none
-	plot    figures.Plot
+	Zooms   bool                             // wheel and keys zoom and pan
+	Outer   func(*fyne.ScrollEvent)          // takes the wheel where it does not zoom; may be nil
+	plot    figures.Plot                     // as it is shown: the window is what was zoomed to
+	whole   [2]float64                       // of the axis
+	zoomed  bool
+	panned  *float32         // where a drag that pans has come to
 	area    figures.PlotArea // at scale 1
 	clock   float64
 	min     fyne.Size
@@ -57,7 +62,8 @@ func NewClockPlot(min fyne.Size, palette func() figures.Palette) *ClockPlot {
 
 // SetPlot brings in a plot.
 func (c *ClockPlot) SetPlot(p figures.Plot) {
-	c.plot, c.flags = p, nil
+	c.flags = nil
+	c.takeWindow(p)
 	if c.touched != nil && c.touched.lane >= len(p.Lanes) {
 		c.touched = nil
 	}
@@ -76,6 +82,7 @@ func newFlag() *flag {
 func (c *ClockPlot) SetClock(t float64) {
 	if t != c.clock {
 		c.clock = t
+		c.follow()
 		c.arrange()
 	}
 }
@@ -100,24 +107,10 @@ func (c *ClockPlot) view() (w, h float64) {
 	return float64(c.Size().Width) / k, float64(c.Size().Height) / k
 }
 
-// blind measures a figure without drawing it.
-type blind struct{ pen.Pen }
-
-func (blind) Polyline([]pen.Pt, bool, color.NRGBA, pen.Stroke)           {}
-func (blind) Circle(pen.Pt, float64, color.NRGBA, pen.Stroke)            {}
-func (blind) Text(pen.Pt, string, float64, color.NRGBA, pen.Align, bool) {}
-func (blind) TextWidth(s string, size float64, bold bool) float64 {
-	return pen.TextWidth(s, size, bold)
-}
-func (blind) Push(_, _, _ float64)        {}
-func (blind) Pop()                        {}
-func (blind) ClipRect(_, _, _, _ float64) {}
-func (blind) Unclip()                     {}
-
 // lay finds where the lanes lie.
 func (c *ClockPlot) lay() {
 	w, h := c.view()
-	c.area = c.plot.Draw(blind{}, w, h, c.Palette())
+	c.area = c.plot.Draw(figures.Measure{}, w, h, c.Palette())
 }
 
 func (c *ClockPlot) paint(w, h int) image.Image {
@@ -131,6 +124,7 @@ func (c *ClockPlot) paint(w, h int) image.Image {
 		c.drawn.Push(0, 0, float64(w)/vw)
 		c.plot.Draw(c.drawn, vw, vh, p)
 		c.paintPoints(c.drawn)
+		c.paintWindow(c.drawn, p)
 		if c.focused {
 			focusFrame(c.drawn, p, vw, vh)
 		}

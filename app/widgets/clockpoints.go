@@ -47,6 +47,9 @@ func (c *ClockPlot) pointAt(at fyne.Position) *heldPoint {
 	for lane := range c.area.Lanes {
 		xs, ys := c.Points.Points(lane)
 		for i := range min(len(xs), len(ys)) {
+			if xs[i] < c.area.From || xs[i] > c.area.To {
+				continue
+			}
 			if d := math.Hypot(c.area.XAt(xs[i])-px, c.area.YAt(lane, ys[i])-py); d < least {
 				least, best = d, &heldPoint{lane: lane, row: i, x: xs[i], y: ys[i], at: at}
 			}
@@ -180,8 +183,11 @@ func (c *ClockPlot) paintPoints(g pen.Pen) {
 			if h.row+1 < n {
 				way = append(way, place(h.row+1))
 			}
+			l := c.area.Lanes[lane]
+			g.ClipRect(c.area.X-2*pointSize, l.Y-2*pointSize, c.area.W+4*pointSize, l.H+4*pointSize)
 			g.Polyline(way, false, color.NRGBA{}, pen.Stroke{W: 1.6, C: pal.Gain, Dash: []float64{4, 3}})
 			g.Circle(at, pointSize+1, pal.Gain, pen.Stroke{})
+			g.Unclip()
 		}
 	}
 }

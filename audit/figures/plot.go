@@ -16,6 +16,8 @@ type Series struct {
 	Dash bool // drawn with dashes, the second sign beside the colour
 	Fill bool // the area between line and zero is tinted
 
+	Long *Long // in place of X and Y: very many points
+
 	// Base makes a band instead of a line: the area between Y and Base is tinted. As long as X and Y.
 	Base []float64
 }
@@ -120,8 +122,9 @@ func (f Plot) fixed(w float64) float64 {
 // Draw draws the plot into 0…w × 0…h and returns where its lanes lie; the zero
 // PlotArea if there is nothing to draw.
 func (f Plot) Draw(p pen.Pen, w, h float64, pal Palette) PlotArea {
+	_, only := p.(Measure)
 	if len(f.Lanes) == 0 {
-		if w > 0 && h > 0 && finite(w) && finite(h) {
+		if !only && w > 0 && h > 0 && finite(w) && finite(h) {
 			empty(p, w, h, "Nothing to plot yet", pal)
 		}
 		return PlotArea{}
@@ -132,6 +135,9 @@ func (f Plot) Draw(p pen.Pen, w, h float64, pal Palette) PlotArea {
 	}
 	d := &plotLayout{Plot: f, p: p, pal: pal, w: fw}
 	d.lay(fh)
+	if only {
+		return d.area.scaled(k)
+	}
 	p.Push(0, 0, k)
 	d.phases()
 	for i := range f.Lanes {
@@ -206,6 +212,20 @@ func (d *plotLayout) titleColumn() {
 // unit returns the unit of a lane with the power of ten taken out.
 func (d *plotLayout) unit(i int) string { return scaledUnit(d.exps[i], d.Lanes[i].Unit) }
 
+// Measure is a pen that draws nothing: a plot is only laid out with it.
+type Measure struct{ pen.Pen }
+
+// TextWidth is the width of a text.
+func (Measure) TextWidth(s string, size float64, bold bool) float64 {
+	return pen.TextWidth(s, size, bold)
+}
+
+// Window is the range of the horizontal axis, and Span that of a lane over it.
+func (f Plot) Window() (from, to float64) { return f.window() }
+
+// Span returns the vertical range of a lane over a window.
+func (l Lane) Span(from, to float64) (lo, hi float64) { return l.span(from, to) }
+
 // window returns the range of the horizontal axis, never empty.
 func (f Plot) window() (from, to float64) {
 	if finite(f.From) && finite(f.To) && f.From < f.To {
@@ -223,6 +243,10 @@ func (f Plot) window() (from, to float64) {
 	}
 	for _, l := range f.Lanes {
 		for _, s := range l.Series {
+			if s.Long != nil && s.Long.Len() > 0 {
+				take(s.Long.X.FromSI(s.Long.x[0]))
+				take(s.Long.X.FromSI(s.Long.x[s.Long.Len()-1]))
+			}
 			for i := range min(len(s.X), len(s.Y)) {
 				take(s.X[i])
 			}
@@ -240,6 +264,11 @@ func (l Lane) span(from, to float64) (lo, hi float64) {
 	zero := l.Zero
 	for _, s := range l.Series {
 		zero = zero || s.Fill
+		if s.Long != nil {
+			if a, b, ok := s.Long.span(from, to); ok {
+				lo, hi = min(lo, a), max(hi, b)
+			}
+		}
 		for i := range min(len(s.X), len(s.Y)) {
 			if v := s.Y[i]; finite(v) && s.X[i] >= from && s.X[i] <= to {
 				lo, hi = min(lo, v), max(hi, v)
@@ -334,7 +363,17 @@ func (d *plotLayout) series(i, n int, s Series) {
 	c := d.pal.Color(s.Role)
 	st := pen.Stroke{W: 1.6, C: c, Dash: d.Lanes[i].dash(n)}
 	base := max(l.Y, min(l.Y+l.H, a.YAt(i, 0)))
-	for _, run := range runs(s.X, s.Y, a.From, a.To, int(2*a.W)) {
+	if s.Long != nil && s.Long.dense(a.From, a.To, int(a.W)) {
+		d.columns(i, s)
+		return
+	}
+	var pieces [][]pen.Pt
+	if s.Long != nil {
+		pieces = s.Long.runs(a.From, a.To, int(2*a.W))
+	} else {
+		pieces = runs(s.X, s.Y, a.From, a.To, int(2*a.W))
+	}
+	for _, run := range pieces {
 		pts := make([]pen.Pt, len(run))
 		for j, q := range run {
 			y := a.YAt(i, q.Y)
@@ -350,6 +389,30 @@ func (d *plotLayout) series(i, n int, s Series) {
 			d.p.Polyline(under, true, faded(c, 70), pen.Stroke{})
 		}
 		d.p.Polyline(pts, false, color.NRGBA{}, st)
+	}
+}
+
+// columns draws a series that has more points than the picture has columns: as one area from the lowest to the highest value of
+// each, at least as thick as a line.
+func (d *plotLayout) columns(i int, s Series) {
+	a, l := d.area, d.area.Lanes[i]
+	const half = 0.8
+	n := int(a.W)
+	wide := (a.To - a.From) / float64(n) / 2
+	for _, run := range s.Long.columns(a.From, a.To, n) {
+		for k := 1; k < len(run); k++ { // a line leads from each column to the next
+			run[k-1].high = max(run[k-1].high, run[k].low)
+			run[k-1].low = min(run[k-1].low, run[k].high)
+		}
+		pts := make([]pen.Pt, 4*len(run))
+		for k, c := range run {
+			x0, x1 := a.XAt(c.x-wide), a.XAt(c.x+wide)
+			top := max(l.Y-2, min(l.Y+l.H+2, a.YAt(i, c.high)-half))
+			low := max(l.Y-2, min(l.Y+l.H+2, a.YAt(i, c.low)+half))
+			pts[2*k], pts[2*k+1] = pen.Pt{X: x0, Y: top}, pen.Pt{X: x1, Y: top}
+			pts[len(pts)-1-2*k], pts[len(pts)-2-2*k] = pen.Pt{X: x0, Y: low}, pen.Pt{X: x1, Y: low}
+		}
+		d.p.Polyline(pts, true, d.pal.Color(s.Role), pen.Stroke{})
 	}
 }
 
