@@ -66,7 +66,7 @@ func (c *curves) slider(name, title string, low, high, step float64) (*trialSlid
 
 func newCurves(ctx station.Context) *curves {
 	c := &curves{ctx: ctx}
-	c.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(400, 300), c.draw), "heat.curves")
+	c.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(320, 300), c.draw), "heat.curves")
 	c.view = widgets.Name(widgets.NewSelect([]string{viewWeek, viewDay, viewStart}, func(string) { c.follow() }), "heat.view")
 	c.view.Selected = viewWeek
 	var rows [3]fyne.CanvasObject
@@ -147,6 +147,9 @@ func (c *curves) first() *audit.HeatStudy { return c.runs[0].Warmth }
 
 // reset sets the sliders to what the file has.
 func (c *curves) reset() {
+	if len(c.runs) == 0 {
+		return
+	}
 	c.quiet, c.loaded, c.waiting = true, true, ""
 	defer func() { c.quiet = false }()
 	for _, s := range []*trialSlider{c.cooler, c.air, c.tank} {

@@ -104,7 +104,7 @@ func (h *Heat) build() {
 		widgets.Card("Oil temperature, cooler needed, checks", container.NewVBox(h.missing, container.NewHBox(h.request), h.warmth.Table)))))
 	h.warmth.In(wide)
 	split := container.NewHSplit(wide, scroll)
-	split.Offset = 0.62
+	split.Offset = 0.57
 	h.content = split
 }
 

@@ -63,7 +63,7 @@ func (p *plot) load() {
 	}
 	p.head.SetText(head)
 	// Below this height the text of the figure would get too small to read: it scrolls.
-	p.figure.SetMin(fyne.NewSize(400, float32(0.86*p.stack.Height())))
+	p.figure.SetMin(fyne.NewSize(320, float32(0.86*p.stack.Height())))
 	p.figure.Refresh()
 	p.clock()
 }

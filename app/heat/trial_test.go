@@ -6,6 +6,7 @@ import (
 	"slices"
 	"strings"
 	"testing"
+	"time"
 
 	"barlitre/app/station"
 	"barlitre/app/station/stationtest"
@@ -53,4 +54,41 @@ func TestSlidersAndSheet(t *testing.T) {
 			t.Errorf("%s is nearly empty", found[0])
 		}
 	}
+}
+
+// While the oil temperatures are worked out anew none of the audit before is shown, and all keeps its place; then they come.
+func TestTemperaturesFollow(t *testing.T) {
+	c := stationtest.New(t, press)
+	h := shown(t, c)
+	rows := len(h.rows)
+	for i := range 20 {
+		if err := c.Document.Set("As found/RV1.crack", []string{"231 bar", "230 bar"}[i%2]); err != nil {
+			t.Fatal(err)
+		}
+		for !c.Document.Current() {
+			time.Sleep(time.Millisecond)
+		}
+		h.Changed(station.Model | station.Solution)
+		if h.curves.waiting == "" {
+			continue // they were there already
+		}
+		for _, r := range h.warmth.Rows() {
+			for _, cell := range r.Cells {
+				if cell.Text != "…" {
+					t.Errorf("while they are worked out %s is %q", r.Name, cell.Text)
+				}
+			}
+		}
+		if len(h.curves.plot.Lanes) > 0 || !h.request.Disabled() || !h.curves.body.Visible() {
+			t.Error("while they are worked out there are curves, or a sheet, or nothing keeps its place")
+		}
+		h.curves.back.OnTapped() // nothing to go back to, and no fall
+		c.Wait()
+		h.Changed(station.Solution)
+		if len(h.rows) != rows || len(h.curves.plot.Lanes) == 0 || h.request.Disabled() {
+			t.Errorf("%d rows, %d lanes", len(h.rows), len(h.curves.plot.Lanes))
+		}
+		return
+	}
+	t.Error("the temperatures were never seen to follow")
 }

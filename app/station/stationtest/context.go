@@ -59,10 +59,10 @@ func New(t *testing.T, sample string) *Context {
 	return c
 }
 
-// Wait waits until the present revision is solved.
+// Wait waits until the present revision is solved, with its oil temperatures.
 func (c *Context) Wait() {
 	c.T.Helper()
-	for end := time.Now().Add(30 * time.Second); !c.Document.Current(); time.Sleep(2 * time.Millisecond) {
+	for end := time.Now().Add(30 * time.Second); !c.Document.Current() || c.Document.Warming(); time.Sleep(2 * time.Millisecond) {
 		if err := c.Document.Failure(); err != nil {
 			c.T.Fatal(err)
 		}
