@@ -19,7 +19,8 @@
 // step. The start is foretold from up to six solutions (past.go), so that in a smooth
 // duty one Newton step does; in a rough one a last step is taken with the factors at
 // hand. The elimination is worked out once for each set of active bounds and replayed
-// on the entries that the slopes have and that are not zero (plan.go, slopes.go). Numbers
+// on the entries that the slopes have and that are not zero (plan.go, slopes.go); slopes that
+// stay as they are a problem states once (Slopes.AddSteady). Numbers
 // known in advance stand before the unknowns (Border), so that the problem never asks which
 // is which. Where a plan does not serve, the dense factors of the unknowns off their bounds
 // do; that, and finding plans, is what a change of direction costs. Only plans are
