@@ -16,23 +16,31 @@ import (
 // hold no others, and the bends of lines that lead nowhere else. It is a small audit file with one circuit, so that it passes
 // through the clipboard to any sheet.
 func (f *File) Copy(circuitName string, ids ...string) (string, error) {
+	return f.CopyNoted(circuitName, nil, ids...)
+}
+
+// CopyNoted is Copy with notes of the sheet, by their places in Notes.
+func (f *File) CopyNoted(circuitName string, notes []int, ids ...string) (string, error) {
 	e, err := f.drawn(circuitName)
 	if err != nil {
 		return "", err
 	}
-	if len(ids) == 0 {
+	if len(ids)+len(notes) == 0 {
 		return "", errors.New("no block is chosen; choose the blocks to copy")
 	}
 	m := f.circuitNode(f.circuitIndex(circuitName))
 	var b strings.Builder
-	fmt.Fprintf(&b, "format: %s\ntitle: %s\ncircuits:\n- name: %s\n  blocks:\n", Format, encode("Part of "+circuitName, true), encode(circuitName, true))
+	fmt.Fprintf(&b, "format: %s\ntitle: %s\ncircuits:\n- name: %s\n", Format, encode("Part of "+circuitName, true), encode(circuitName, true))
+	if len(ids) > 0 {
+		b.WriteString("  blocks:\n")
+	}
 	for _, id := range ids {
 		if _, err := e.block(id); err != nil {
 			return "", err
 		}
 		fmt.Fprintf(&b, "    %s: %s\n", encode(id, true), flowText(child(child(m, "blocks"), id)))
 	}
-	var lines, groups, bends []string
+	var lines, groups, bends, written []string
 	for _, l := range e.Lines {
 		inner := slices.DeleteFunc(slices.Clone(l.Ports), func(p circuit.PortRef) bool { return !slices.Contains(ids, p.Block) })
 		if len(inner) > 1 {
@@ -49,10 +57,16 @@ func (f *File) Copy(circuitName string, ids ...string) (string, error) {
 			bends = append(bends, bendText(b))
 		}
 	}
+	for _, i := range notes {
+		if i < 0 || i >= len(e.Notes) {
+			return "", fmt.Errorf("there is no note %d on the sheet of %q", i, circuitName)
+		}
+		written = append(written, noteText(e.Notes[i]))
+	}
 	for _, list := range []struct {
 		key   string
 		texts []string
-	}{{"lines", lines}, {"groups", groups}, {"bends", bends}} {
+	}{{"lines", lines}, {"groups", groups}, {"bends", bends}, {"notes", written}} {
 		if len(list.texts) > 0 {
 			fmt.Fprintf(&b, "  %s:\n  - %s\n", list.key, strings.Join(list.texts, "\n  - "))
 		}
@@ -72,6 +86,9 @@ func PartPlace(text string) ([2]float64, error) {
 			at[i] = math.Min(at[i], b.At[i])
 		}
 	}
+	for _, n := range e.Notes {
+		at[0], at[1] = math.Min(at[0], n.At[0]), math.Min(at[1], n.At[1])
+	}
 	if math.IsInf(at[0], 1) {
 		at = [2]float64{}
 	}
@@ -81,7 +98,7 @@ func PartPlace(text string) ([2]float64, error) {
 // part reads a text of Copy; any audit file will do, of which the first circuit is taken.
 func part(text string) (*CircuitEntry, *File, error) {
 	g, _ := Parse([]byte(text), nil, "")
-	if g == nil || len(g.Circuits) == 0 || len(g.Circuits[0].Blocks) == 0 {
+	if g == nil || len(g.Circuits) == 0 || len(g.Circuits[0].Blocks)+len(g.Circuits[0].Notes) == 0 {
 		return nil, nil, errors.New("the clipboard holds no blocks of a circuit; copy some first")
 	}
 	return &g.Circuits[0], g, nil
@@ -108,7 +125,7 @@ func (f *File) Paste(circuitName, text string, shift [2]float64) (map[string]str
 		}
 	}
 	ids, taken := map[string]string{}, map[string]bool{}
-	var blocks, lines, groups, bends []string
+	var blocks, lines, groups, bends, notes []string
 	for _, b := range p.Blocks {
 		kind := circuit.KindNamed(b.Kind)
 		if kind == nil {
@@ -137,12 +154,16 @@ func (f *File) Paste(circuitName, text string, shift [2]float64) (map[string]str
 		b.Port.Block = ids[b.Port.Block]
 		bends = append(bends, bendText(b.Mapped(func(at [2]float64) [2]float64 { return [2]float64{at[0] + shift[0], at[1] + shift[1]} })))
 	}
+	for _, n := range p.Notes {
+		n.At = [2]float64{n.At[0] + shift[0], n.At[1] + shift[1]}
+		notes = append(notes, noteText(n))
+	}
 	d, ci := f.draft(), f.circuitIndex(circuitName)
 	for _, x := range []struct {
 		key    string
 		isList bool
 		texts  []string
-	}{{"blocks", false, blocks}, {"lines", true, lines}, {"groups", true, groups}, {"bends", true, bends}} {
+	}{{"blocks", false, blocks}, {"lines", true, lines}, {"groups", true, groups}, {"bends", true, bends}, {"notes", true, notes}} {
 		if len(x.texts) == 0 {
 			continue
 		}
@@ -152,13 +173,18 @@ func (f *File) Paste(circuitName, text string, shift [2]float64) (map[string]str
 	}
 	return ids, f.take("paste", d, func(h *File) bool {
 		c := h.Circuit(circuitName)
-		return len(c.Blocks) == len(e.Blocks)+len(blocks) && len(c.Lines) == len(e.Lines)+len(lines)
+		return len(c.Blocks) == len(e.Blocks)+len(blocks) && len(c.Lines) == len(e.Lines)+len(lines) && len(c.Notes) == len(e.Notes)+len(notes)
 	})
 }
 
 // Duplicate copies blocks within a circuit, shifted [modules].
 func (f *File) Duplicate(circuitName string, shift [2]float64, ids ...string) (map[string]string, error) {
-	text, err := f.Copy(circuitName, ids...)
+	return f.DuplicateNoted(circuitName, shift, nil, ids...)
+}
+
+// DuplicateNoted is Duplicate with notes of the sheet.
+func (f *File) DuplicateNoted(circuitName string, shift [2]float64, notes []int, ids ...string) (map[string]string, error) {
+	text, err := f.CopyNoted(circuitName, notes, ids...)
 	if err != nil {
 		return nil, err
 	}

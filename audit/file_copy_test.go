@@ -192,3 +192,34 @@ func TestEditsOfFaultyFiles(t *testing.T) {
 		t.Errorf("only %d edits of %d files were done", done, len(names))
 	}
 }
+
+// Notes that are chosen go through the clipboard with the blocks, or alone, and come out
+// shifted as far as these.
+func TestCopyTakesNotes(t *testing.T) {
+	f := full(t)
+	if _, err := f.AddNote("As found", "spare: 12.5 L/min", [2]float64{3, 4}); err != nil {
+		t.Fatal(err)
+	}
+	n := len(f.Circuit("As found").Notes)
+	for _, ids := range [][]string{{"RV1"}, nil} {
+		text, err := f.CopyNoted("As found", []int{n - 1}, ids...)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if at, err := PartPlace(text); err != nil || at[0] > 3 || at[1] > 4 {
+			t.Errorf("the part of %v begins at %v, %v", ids, at, err)
+		}
+		before := len(f.Circuit("As found").Notes)
+		came, err := f.Paste("As found", text, [2]float64{10, 20})
+		if err != nil || len(came) != len(ids) {
+			t.Fatal(came, err)
+		}
+		notes := f.Circuit("As found").Notes
+		if len(notes) != before+1 || notes[before] != (circuit.SheetNote{Text: "spare: 12.5 L/min", At: [2]float64{13, 24}}) {
+			t.Errorf("notes after pasting %v: %v", ids, notes)
+		}
+	}
+	if _, err := f.CopyNoted("As found", []int{99}); err == nil {
+		t.Error("a note that is not there was copied")
+	}
+}

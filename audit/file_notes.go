@@ -18,7 +18,7 @@ func (f *File) AddNote(circuitName, text string, at [2]float64) (int, error) {
 	text = strings.TrimSpace(text)
 	n := len(e.Notes)
 	return n, f.sheetEdit(e, "note", func(d *draft, ci int) error {
-		return d.add(d.circuit(ci), "notes", true, "{text: "+encode(text, true)+", at: "+placeText(at)+"}")
+		return d.add(d.circuit(ci), "notes", true, noteText(circuit.SheetNote{Text: text, At: at}))
 	}, func(g *CircuitEntry) bool {
 		return len(g.Notes) == n+1 && g.Notes[n] == circuit.SheetNote{Text: text, At: at}
 	})
@@ -137,4 +137,8 @@ func (f *File) sheetEdit(e *CircuitEntry, what string, change func(d *draft, ci 
 		return fmt.Errorf("circuit %q, %s: %w", e.Name, what, err)
 	}
 	return f.take(what, d, func(g *File) bool { return holds(g.Circuit(e.Name)) })
+}
+
+func noteText(n circuit.SheetNote) string {
+	return "{text: " + encode(n.Text, true) + ", at: " + placeText(n.At) + "}"
 }

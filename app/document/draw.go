@@ -65,17 +65,6 @@ func (d *Document) Delete(circuitName string, heal bool, ids ...string) error {
 	return d.Edit("Delete "+these(ids), func(f *audit.File) error { return f.Delete(circuitName, heal, ids...) })
 }
 
-// Cut is Copy, then Delete.
-func (d *Document) Cut(circuitName string, ids ...string) (text string, err error) {
-	err = d.Edit("Cut "+these(ids), func(f *audit.File) (err error) {
-		if text, err = f.Copy(circuitName, ids...); err != nil {
-			return err
-		}
-		return f.Delete(circuitName, false, ids...)
-	})
-	return text, err
-}
-
 // Rename gives a block another id.
 func (d *Document) Rename(circuitName, old, id string) error {
 	return d.Edit("Rename "+old, func(f *audit.File) error { return f.Rename(circuitName, old, id) })

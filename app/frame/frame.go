@@ -39,7 +39,8 @@ type Frame struct {
 	laid     *audit.Report
 	laidOf   *audit.Solution
 	laidFor  units.System
-	solution *audit.Solution // of all circuits
+	solution *audit.Solution // of all circuits, as last told
+	solved   int             // its revision
 	pair     *audit.Solution // of the two shown
 	pairOf   pairOf
 
@@ -168,7 +169,7 @@ func (f *Frame) told(e document.Event) {
 		if e.Err != nil {
 			f.Say(e.Err.Error())
 		}
-		f.solution, _ = f.doc.Solution()
+		f.solution, f.solved = f.doc.Solution()
 		f.changed(station.Solution)
 	case document.Solving:
 		f.verdict.Refresh()
@@ -185,7 +186,7 @@ func (f *Frame) told(e document.Event) {
 // reset goes to the start of what was just opened.
 func (f *Frame) reset() {
 	f.clock, f.duty, f.circuit, f.block, f.beside = 0, 0, -1, "", ""
-	f.solution, _ = f.doc.Solution()
+	f.solution, f.solved = f.doc.Solution()
 	if file := f.doc.File(); file != nil && len(file.Duties) > 0 {
 		f.clock = f.firstMotion()
 	}
@@ -301,16 +302,8 @@ func (f *Frame) Local(text string) string {
 	if !f.settings.comma {
 		return text
 	}
-	b := []rune(text)
-	for i := 1; i+1 < len(b); i++ {
-		if b[i] == '.' && digit(b[i-1]) && digit(b[i+1]) {
-			b[i] = ','
-		}
-	}
-	return string(b)
+	return units.DecimalComma(text)
 }
-
-func digit(r rune) bool { return r >= '0' && r <= '9' }
 
 // Palette returns the colours of the theme.
 func (f *Frame) Palette() figures.Palette { return f.theme().Palette() }

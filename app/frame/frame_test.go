@@ -270,3 +270,31 @@ func TestLooks(t *testing.T) {
 		}
 	}
 }
+
+// The state says "up to date" no sooner than the stations were told of the result.
+func TestUpToDateWhenTold(t *testing.T) {
+	b := newBench(t)
+	b.Open("")
+	b.solved()
+	if err := b.doc.Set("As found/RV1.crack", "200 bar"); err != nil {
+		t.Fatal(err)
+	}
+	told := 0
+	for deadline := time.Now().Add(20 * time.Second); !b.doc.Current() || b.busy(); time.Sleep(time.Millisecond) {
+		if time.Now().After(deadline) {
+			t.Fatal("not solved")
+		}
+	}
+	if text, good := b.stateText(); good {
+		t.Errorf("the state says %q before the stations were told", text)
+	}
+	b.drain()
+	for _, w := range b.pages[0].told {
+		if w.Has(station.Solution) {
+			told++
+		}
+	}
+	if text, good := b.stateText(); !good || told < 2 {
+		t.Errorf("the state says %q, the station heard of %d results", text, told)
+	}
+}

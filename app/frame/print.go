@@ -15,6 +15,7 @@ import (
 	"barlitre/audit"
 	"barlitre/audit/figures"
 	"barlitre/audit/pdf"
+	"barlitre/machines/units"
 )
 
 // today is the date on printed sheets.
@@ -39,6 +40,9 @@ func (f *Frame) printItems() *fyne.MenuItem {
 func (f *Frame) seen(on pdf.Paper) pdf.View {
 	file := f.doc.File()
 	v := pdf.View{Duty: f.duty, At: f.clock, Cycle: f.view.Cycle, Hide: f.view.Hide, Paper: on, Marks: figures.Marks(f.doc.Findings())}
+	if f.settings.comma {
+		v.Local = units.DecimalComma
+	}
 	if base := file.Base(); base != nil {
 		v.Circuits = append(v.Circuits, base.Name)
 	}

@@ -104,7 +104,7 @@ func (f *Frame) stateText() (text string, good bool) {
 	switch {
 	case running && total > 0 && done > 0:
 		return fmt.Sprintf("solving %d %%", 100*done/total), false
-	case running:
+	case running, f.doc.Current() && f.solved != f.doc.Revision(): // solved, but not on the sheets yet
 		return "solving", false
 	case !f.doc.Current() && f.solution != nil:
 		return "out of date", false

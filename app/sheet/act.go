@@ -81,32 +81,38 @@ func (e *editor) chosen(to string) []string {
 }
 
 func (e *editor) copy() {
-	ids := e.chosen("copy it")
-	if len(ids) == 0 {
+	ids, notes := e.ids(), e.noteList()
+	if len(notes) == 0 && len(e.chosen("copy it")) == 0 {
 		return
 	}
-	text, err := e.s.ctx.Doc().File().Copy(e.name, ids...)
+	text, err := e.s.ctx.Doc().File().CopyNoted(e.name, notes, ids...)
 	if err != nil {
 		e.s.refused(err)
 		return
 	}
 	fyne.CurrentApp().Clipboard().SetContent(text)
-	e.s.ctx.Say("Copied " + strings.Join(ids, ", ") + "; Ctrl+V puts it at the pointer, on either sheet.")
+	e.s.ctx.Say("Copied " + namesOf(ids, notes) + "; Ctrl+V puts it at the pointer, on either sheet.")
 }
 
 func (e *editor) cut() {
-	ids := e.chosen("cut it")
-	if len(ids) == 0 {
+	ids, notes := e.ids(), e.noteList()
+	if len(notes) == 0 && len(e.chosen("cut it")) == 0 {
 		return
 	}
-	text, err := e.s.ctx.Doc().Cut(e.name, ids...)
+	var text string
+	err := e.s.ctx.Doc().Edit("Cut "+namesOf(ids, notes), func(f *audit.File) (err error) {
+		if text, err = f.CopyNoted(e.name, notes, ids...); err != nil {
+			return err
+		}
+		return deleteAll(f, e.name, notes, false, ids)
+	})
 	if err != nil {
 		e.s.refused(err)
 		return
 	}
 	fyne.CurrentApp().Clipboard().SetContent(text)
 	e.choose("", false)
-	e.s.ctx.Say("Cut " + strings.Join(ids, ", ") + "; Ctrl+V puts it at the pointer, on either sheet.")
+	e.s.ctx.Say("Cut " + namesOf(ids, notes) + "; Ctrl+V puts it at the pointer, on either sheet.")
 }
 
 // paste puts the blocks of the clipboard at the pointer, or in the middle of what is seen.
@@ -123,8 +129,9 @@ func (e *editor) paste() {
 	}
 	to := e.target()
 	shift := e.clear(text, [2]float64{to[0] - from[0], to[1] - from[1]})
+	before := len(e.present().Notes)
 	ids, err := e.s.ctx.Doc().Paste(e.name, text, shift)
-	e.came(ids, err, "Pasted ")
+	e.came(ids, before, err, "Pasted ")
 }
 
 // clear shifts pasted blocks on while one would stand on another.
@@ -146,21 +153,26 @@ func (e *editor) stands(x, y float64) bool {
 }
 
 func (e *editor) duplicate() {
-	ids := e.chosen("duplicate it")
-	if len(ids) == 0 {
+	ids, notes := e.ids(), e.noteList()
+	if len(notes) == 0 && len(e.chosen("duplicate it")) == 0 {
 		return
 	}
-	text, err := e.s.ctx.Doc().File().Copy(e.name, ids...)
+	text, err := e.s.ctx.Doc().File().CopyNoted(e.name, notes, ids...)
 	if err != nil {
 		e.s.refused(err)
 		return
 	}
-	copies, err := e.s.ctx.Doc().Duplicate(e.name, e.clear(text, [2]float64{copyShift, copyShift}), ids...)
-	e.came(copies, err, "Duplicated: ")
+	before, shift := len(e.present().Notes), e.clear(text, [2]float64{copyShift, copyShift})
+	var copies map[string]string
+	err = e.s.ctx.Doc().Edit("Duplicate "+namesOf(ids, notes), func(f *audit.File) (err error) {
+		copies, err = f.DuplicateNoted(e.name, shift, notes, ids...)
+		return err
+	})
+	e.came(copies, before, err, "Duplicated: ")
 }
 
-// came selects blocks that an edit brought.
-func (e *editor) came(ids map[string]string, err error, said string) {
+// came selects blocks that an edit brought, and the notes behind those before it.
+func (e *editor) came(ids map[string]string, before int, err error, said string) {
 	if err != nil {
 		e.s.refused(err)
 		return
@@ -171,7 +183,13 @@ func (e *editor) came(ids map[string]string, err error, said string) {
 	}
 	slices.Sort(list)
 	e.take(list)
-	e.s.ctx.Say(said + strings.Join(list, ", ") + ". Drag it to its place; Ctrl+Z takes it back.")
+	var notes []int
+	for i := before; i < len(e.drawn.Notes); i++ {
+		notes = append(notes, i)
+	}
+	e.selectMarks(notes, -1)
+	e.redraw()
+	e.s.ctx.Say(said + namesOf(list, notes) + ". Drag it to its place; Ctrl+Z takes it back.")
 }
 
 // take selects blocks of the present file, of which the sheet may not know yet.

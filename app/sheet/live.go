@@ -64,7 +64,23 @@ func (l *live) rows() []liveRow {
 	case b == nil:
 		return l.totals()
 	}
-	return l.blockValues(c, b)
+	own := l.blockValues(c, b)
+	other, twin := l.p.compared()
+	if twin == nil {
+		return own
+	}
+	theirs := map[string]liveRow{}
+	for _, r := range l.blockValues(other, twin) {
+		theirs[r.name] = r
+	}
+	var out []liveRow
+	for _, r := range own {
+		out = append(out, r)
+		if t, ok := theirs[r.name]; ok {
+			out = append(out, liveRow{name: "   " + other.Name, values: t.values})
+		}
+	}
+	return out
 }
 
 // totals are the powers of both circuits at the clock.

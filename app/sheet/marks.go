@@ -118,26 +118,9 @@ func (e *editor) deleteGroup() {
 // deleteNotes takes the selected notes off the sheet, and blocks with them.
 func (e *editor) deleteNotes(ids []string) {
 	notes := e.noteList()
-	what := "note"
-	if len(notes) > 1 {
-		what = fmt.Sprintf("%d notes", len(notes))
-	}
-	if len(ids) > 0 {
-		what = strings.Join(ids, ", ") + " and " + what
-	}
+	what := namesOf(ids, notes)
 	err := e.s.ctx.Doc().Edit("Delete "+what, func(f *audit.File) error {
-		for _, i := range slices.Backward(notes) {
-			if err := f.DeleteNote(e.name, i); err != nil {
-				return err
-			}
-		}
-		if len(ids) == 0 {
-			return nil
-		}
-		if err := f.Delete(e.name, true, ids...); err != nil {
-			return f.Delete(e.name, false, ids...)
-		}
-		return nil
+		return deleteAll(f, e.name, notes, true, ids)
 	})
 	if err != nil {
 		e.s.refused(err)
@@ -145,4 +128,36 @@ func (e *editor) deleteNotes(ids []string) {
 	}
 	e.choose("", false)
 	e.s.ctx.Say("Deleted " + what + ". Ctrl+Z brings it back.")
+}
+
+// namesOf names blocks and notes: "P1, V1 and 2 notes".
+func namesOf(ids []string, notes []int) string {
+	what := "note"
+	if len(notes) > 1 {
+		what = fmt.Sprintf("%d notes", len(notes))
+	}
+	switch {
+	case len(notes) == 0:
+		return strings.Join(ids, ", ")
+	case len(ids) == 0:
+		return what
+	}
+	return strings.Join(ids, ", ") + " and " + what
+}
+
+// deleteAll takes notes and blocks off a sheet; with heal the lines at a block become one
+// where that makes sense.
+func deleteAll(f *audit.File, name string, notes []int, heal bool, ids []string) error {
+	for _, i := range slices.Backward(notes) {
+		if err := f.DeleteNote(name, i); err != nil {
+			return err
+		}
+	}
+	if len(ids) == 0 {
+		return nil
+	}
+	if heal && f.Delete(name, true, ids...) == nil {
+		return nil
+	}
+	return f.Delete(name, false, ids...)
 }

@@ -9,20 +9,6 @@ import (
 	"barlitre/audit/pen"
 )
 
-// localPen writes numbers with the user's decimal sign.
-type localPen struct {
-	pen.Pen
-	local func(string) string
-}
-
-func (l localPen) Text(p pen.Pt, s string, size float64, c color.NRGBA, al pen.Align, bold bool) {
-	l.Pen.Text(p, l.local(s), size, c, al, bold)
-}
-
-func (l localPen) TextWidth(s string, size float64, bold bool) float64 {
-	return l.Pen.TextWidth(l.local(s), size, bold)
-}
-
 // paint draws the sheet at the pixel size asked for. It runs on the UI goroutine.
 func (e *editor) paint(w, h int) image.Image {
 	if e.pen == nil || e.pen.Image().Rect.Dx() != w || e.pen.Image().Rect.Dy() != h {
@@ -40,7 +26,7 @@ func (e *editor) paint(w, h int) image.Image {
 		}
 		if size.Width > 0 && size.Height > 0 {
 			e.pen.Push(0, 0, float64(w)/float64(size.Width))
-			e.draw(localPen{e.pen, e.s.ctx.Local}, sh, clear)
+			e.draw(pen.Worded(e.pen, e.s.ctx.Local), sh, clear)
 			e.pen.Pop()
 		}
 	}

@@ -55,7 +55,7 @@ func newPanel(s *Station) *panel {
 	p.newParts()
 	p.newCompare()
 	p.list = container.New(tight{})
-	p.scroll = container.NewVScroll(container.New(edges{}, p.list))
+	p.scroll = widgets.Name(container.NewVScroll(container.New(edges{}, p.list)), "sheet.panel")
 	p.live.plot.Outer = p.scroll.Scrolled
 	top := container.New(tight{}, p.head, p.compareLine, p.links)
 	inner := container.NewBorder(top, nil, nil, nil, p.scroll)

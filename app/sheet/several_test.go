@@ -87,7 +87,11 @@ func TestCompareWithTheOtherCircuit(t *testing.T) {
 	if row().content.Visible() {
 		t.Error("compared without being asked")
 	}
+	alone := len(b.s.panel.live.rows())
 	widgets.Named("sheet.compare").(*link).do()
+	if rows := b.s.panel.live.rows(); alone == 0 || len(rows) != 2*alone || strings.TrimSpace(rows[1].name) != "Pump-controlled" || len(rows[1].values) != 1 {
+		t.Errorf("the values now of both circuits: %v, were %d rows of one", rows, alone)
+	}
 	if r := row(); !strings.HasPrefix(r.text.Text, "≠ ") || !strings.HasSuffix(r.text.Text, "230 bar") || !r.take.Visible() {
 		t.Errorf("beside 220 bar stands %q, to take: %v", row().text.Text, row().take.Visible())
 	}

@@ -194,13 +194,19 @@ func (s *Station) solved(name string) *audit.CircuitRun {
 
 // bringState gives both sheets the state at the clock.
 func (s *Station) bringState() {
+	fit := false
 	for i, e := range s.editors {
+		had := e.state != nil
 		if run := s.run(i); s.ctx.View().Cycle {
 			e.state = figures.OverCycle(run, s.ctx.Clock())
 		} else {
 			e.state = figures.StateAt(run, s.ctx.Clock())
 		}
+		fit = fit || e.fitted && had != (e.state != nil) // the legend takes room, or gives it back
 		e.hover.stale()
+	}
+	if fit {
+		s.fitAll()
 	}
 }
 

@@ -25,7 +25,7 @@ const legendFoot = 5
 
 // legendHeight is the strip at the lower edge [units].
 func (e *editor) legendHeight() float64 {
-	if e.Size().Height < legendFrom*widgets.Scale() {
+	if e.state == nil || e.Size().Height < legendFrom*widgets.Scale() {
 		return 0
 	}
 	return (figures.LegendHeight*legendAt + legendFoot) * float64(widgets.Scale())

@@ -48,6 +48,7 @@ func (b *boards) draw(p pen.Pen, one *board, number int) {
 	pen.Rect(p, 0, 0, w, h, b.pal.Card, pen.Stroke{W: frameLine, C: b.pal.Ink})
 	top := h - blockHeight
 	b.titleBlock(p, w-blockWidth, top, one.e, number)
+	p = pen.Worded(p, b.Local) // not the title block: its numbers are names
 	b.told(p, boardRoom, top, w-blockWidth-2*boardRoom, one)
 	opt := figures.SheetOptions{Palette: b.pal, System: b.opt.System, Scales: b.scales, Hide: b.Hide, Findings: b.Marks[one.e.Name]}
 	if one.state != nil {

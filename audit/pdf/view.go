@@ -24,7 +24,8 @@ type View struct {
 	Cycle    bool          // discs show the heat of the cycle, not of the instant
 	Hide     figures.Signs // results that are left out
 	Marks    map[string]map[string]circuit.Level
-	Paper    Paper // A4 when not given
+	Paper    Paper                    // A4 when not given
+	Local    func(text string) string // puts the reader's decimal sign into what is drawn; nil = a point
 }
 
 // Paper is a size of page, lying [mm].

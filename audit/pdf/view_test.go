@@ -17,6 +17,7 @@ import (
 	"barlitre/audit/figures"
 	"barlitre/audit/pen"
 	"barlitre/circuit"
+	"barlitre/machines/units"
 )
 
 // solved reads and solves a sample.
@@ -252,5 +253,34 @@ func TestReportWithSheets(t *testing.T) {
 		if !strings.Contains(text, want) {
 			t.Errorf("no page says %q", want)
 		}
+	}
+}
+
+// A sheet is printed with the decimal sign of its reader, but for the title block.
+func TestPrintedDecimalSign(t *testing.T) {
+	s := solvedSample(t, "../../samples/baling-press.yaml")
+	v := BusiestView(s)
+	number := regexp.MustCompile(`\d\.\d`)
+	texts := func() (in, out int) {
+		for _, page := range onRecorders(t, s.File, s, v) {
+			for _, b := range page.Boxes() {
+				switch {
+				case !number.MatchString(b.Text):
+				case b.X > A4.W-frameOther-blockWidth && b.Y > A4.H-frameOther-blockHeight:
+					in++
+				default:
+					out++
+				}
+			}
+		}
+		return in, out
+	}
+	block, points := texts()
+	if points == 0 {
+		t.Fatal("no number with a decimal point on the sheets")
+	}
+	v.Local = units.DecimalComma
+	if in, out := texts(); in != block || out != 0 {
+		t.Errorf("with a comma %d points in the title block, were %d; %d elsewhere", in, block, out)
 	}
 }
