@@ -17,6 +17,7 @@ import (
 type Step struct {
 	*Finding
 	Cure     Cure    // that was priced
+	Taken    Cure    // that was priced after those above it
 	Alone    Saving  // cured alone
 	InOrder  Saving  // cured after those above it
 	Without  Year    // with it cured alone
@@ -152,7 +153,7 @@ func (l *Ladder) alone(ctx context.Context, f *audit.File, base outcome, cache *
 			defer func() { <-room }()
 			defer m.add()
 			errs[i] = guarded(x, func() error {
-				_, edits, o, why, err := cache.choose(ctx, f, base, x.Finding)
+				_, edits, o, why, err := cache.choose(ctx, f, base, x.Finding, true)
 				if err == nil && why == "" {
 					x.Cure, x.Alone, x.Without, x.Regained = edits, less(base, o), yearOf(o), base.short-o.short
 				}
@@ -201,7 +202,7 @@ func (l *Ladder) inOrder(ctx context.Context, f *audit.File, last outcome, cache
 		if x.Unpriced != "" {
 			continue
 		}
-		g, edits, o, why, err := cache.choose(ctx, f, last, x.Finding)
+		g, edits, o, why, err := cache.choose(ctx, f, last, x.Finding, false)
 		if err != nil {
 			return last, err
 		}
@@ -209,7 +210,7 @@ func (l *Ladder) inOrder(ctx context.Context, f *audit.File, last outcome, cache
 			x.Unpriced = "after those above it: " + why
 			continue
 		}
-		x.InOrder, x.Before, x.After = less(last, o), yearOf(last), yearOf(o)
+		x.Taken, x.InOrder, x.Before, x.After = edits, less(last, o), yearOf(last), yearOf(o)
 		l.Class[x.Class] = l.Class[x.Class].Plus(x.InOrder)
 		l.Edits = append(l.Edits, edits...)
 		f, last = g, o
@@ -271,10 +272,21 @@ func (l *Ladder) Faultless() Cure {
 	var out Cure
 	for _, x := range l.Steps {
 		if !x.Habit && x.Unpriced == "" {
-			out = append(out, x.Cure...)
+			out = append(out, x.Taken...)
 		}
 	}
 	return out
+}
+
+// Restored is the machine with what is a fault set or repaired to what it should be, and the names of those faults. No part
+// is exchanged for one of another size: what is read at the machine that stands there is compared with it.
+func (l *Ladder) Restored() (edits Cure, names []string) {
+	for _, x := range l.Steps {
+		if !x.Habit && !x.Resizes() && x.Unpriced == "" {
+			edits, names = append(edits, x.Taken...), append(names, x.Name())
+		}
+	}
+	return edits, names
 }
 
 // Total is what all priced cures save together.
