@@ -44,6 +44,8 @@ func (s *Solution) Requests(system units.System) []Request {
 			r.Missing = "The file says nothing of tank and cooler; give the section heat, at least the oil in the tank."
 		case h.Week == nil:
 			r.Missing = h.Fault
+		case h.needsNone():
+			r.Missing = "No cooler is needed in these states: the walls take all the heat with the oil at " + p.degrees(h.Wanted) + ", in every duty and in the hottest hour."
 		default:
 			r.Groups = []RequestGroup{requestLoad(p, c), requestOil(p, h), requestFlow(p, h), requestCoolant(p, h), requestFitting(p, h)}
 			r.Cautions = requestCautions
@@ -59,6 +61,23 @@ var requestCautions = []string{
 	"A cooler is weak against pressure: surges, and a cylinder whose bore side empties fast, can burst it. Give it a bypass and a line whose highest pressure is known.",
 	"In a case drain it must not raise the case pressure above what the shaft seal stands. Hot oil and surfaces burn. Pressure equipment and electrical work: " +
 		"local rules and licensed persons come before anything printed here.",
+}
+
+// needsNone reports whether no duty leaves a cooler any heat to take.
+func (h *HeatStudy) needsNone() bool {
+	for i := range h.Needs {
+		if h.Needs[i].Fault != "" || h.Needs[i].Heat >= leastHeat {
+			return false
+		}
+	}
+	return true
+}
+
+func capacityNote(n *CoolerNeed) string {
+	if n.Asked() > n.Heat/(n.Entering-n.Coolant)*(1+1e-6) {
+		return "more than heat over the entering difference: the oil comes in parts, each with its own flow and temperature"
+	}
+	return "heat over the entering difference"
 }
 
 func blank(name, who string) RequestRow { return RequestRow{Name: name, Note: who, Blank: true} }
@@ -81,14 +100,14 @@ func requestLoad(p printer, c *CircuitRun) RequestGroup {
 	case design.Fault != "":
 		add("Capacity, clean", "none does", design.Fault)
 	default:
-		add("Capacity, clean", p.cooler(design.Rate), "heat over the entering difference")
+		add("Capacity, clean", p.cooler(design.Asked()), capacityNote(&design))
 		factor := h.Fouling
 		note := "× " + units.Number(h.Fouling, 3) + " for fouling"
 		if alt := h.Section.number("altitude", &h.Oil); alt > 0 && h.Section.Word("cooler") != waterCooler {
 			factor /= math.Max(0.1, 1-0.1*alt/1000)
 			note += ", / " + units.Number(math.Max(0.1, 1-0.1*alt/1000), 3) + " for " + units.Number(alt, 3) + "\u202fm of altitude"
 		}
-		add("Capacity asked for", p.cooler(factor*design.Rate), note+"; no other reserve is in it")
+		add("Capacity asked for", p.cooler(factor*design.Asked()), note+"; no other reserve is in it")
 	}
 	g.Rows = append(g.Rows, blank("Reserve in the maker's figures", "maker"))
 	return g
