@@ -36,6 +36,7 @@ type Ladder struct {
 	Cured    Year // with all cures: the circuit as found that a proposal is to beat
 	Class    map[Class]Saving
 	Splits   []Split // by proposal
+	Lacks    float64 // s a cycle by which axes fall short as found, and do no more with all cures
 	Edits    Cure    // all cures that were priced, in order
 }
 
@@ -116,7 +117,7 @@ func Climb(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt Op
 	if err != nil {
 		return nil, err
 	}
-	l.Cured = yearOf(last)
+	l.Cured, l.Lacks = yearOf(last), base.short-last.short
 	for _, c := range s.Comparisons {
 		if c.Base == run && c.Missing == "" {
 			l.Splits = append(l.Splits, l.split(c, base, last))
@@ -237,15 +238,16 @@ func (l *Ladder) split(c *audit.Comparison, base, cured outcome) Split {
 	return s
 }
 
+// leastLack [s] of motion a cycle missing makes two years no longer those of the same work.
+const leastLack = 1e-2
+
 // Note says what the price does not, in words; "" where it says all.
 func (x *Step) Note() string {
 	switch {
 	case x.Unpriced != "":
 		return "No price: " + x.Unpriced + "."
-	case x.Regained > 1e-2 && x.Alone.Energy < 0:
-		return fmt.Sprintf("It costs energy, for the machine then makes its motions in time again: %s a cycle that axes now fall short.", seconds(x.Regained))
-	case x.Regained > 1e-2:
-		return fmt.Sprintf("The machine also gains %s a cycle that axes now fall short.", seconds(x.Regained))
+	case x.Regained > leastLack:
+		return fmt.Sprintf("No saving can be told: the machine as found delivers less (%s a cycle missing), and with this cured it makes those motions again.", seconds(x.Regained))
 	case x.Alone.Energy <= 0 && x.InOrder.Energy > 0:
 		return "Alone it saves nothing, for what is gained here is lost at the faults above it; with those cured it does."
 	case x.Alone.Energy <= 0:

@@ -8,6 +8,7 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
+	"barlitre/machines/units"
 )
 
 func near(a, b, scale float64) bool { return math.Abs(a-b) <= 1e-6*math.Abs(scale) }
@@ -209,5 +210,34 @@ func TestCureLeavesTheMachineWorking(t *testing.T) {
 		if before[k] && !ok {
 			t.Errorf("%s is no longer passed with %s", k, l[0].Faultless())
 		}
+	}
+}
+
+// A worn pump that cannot reach the speed saves nothing that could be compared: the page says first that motion is missing.
+func TestMissingMotionIsSaidFirst(t *testing.T) {
+	f := asFound(twins["press, pump worn"].file(t, sources(t)))
+	if err := f.Set("As found/P1.wear", "12"); err != nil {
+		t.Fatal(err)
+	}
+	s := solve(t, f)
+	short := 0.0
+	for _, d := range s.Circuits[0].Duties {
+		for _, x := range d.Shortfalls {
+			short += x.Seconds
+		}
+	}
+	if short < 0.1 {
+		t.Fatalf("%g s are missing: the case tells nothing", short)
+	}
+	l, err := fixfirst.All(context.Background(), s, fixfirst.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := l[0].Page(units.Metric)
+	if !strings.HasPrefix(p.Verdict, `The circuit "As found" as found does not do its work`) || strings.Contains(p.Verdict, "less,") {
+		t.Errorf("verdict %q", p.Verdict)
+	}
+	if text := p.Rows[len(p.Rows)-1].Cells[3].Text; text != "not comparable" {
+		t.Errorf("all, in order: %q", text)
 	}
 }
