@@ -72,3 +72,21 @@ func TestNoCoolerNeededHasNoSheet(t *testing.T) {
 		t.Errorf("sheet %+v", r)
 	}
 }
+
+// A gate whose value is what rounding leaves of nothing asks 0; what the cooling draws is named where losses are summed; the
+// range of a payback says what it is the range of.
+func TestWordsOfSmallAndSummedFigures(t *testing.T) {
+	if asked, _, _ := GateText(circuit.Gate{Value: 1.06e-6, Limit: 200, Unit: units.Preferred(units.Torque, units.Metric), Passed: true}); !strings.HasPrefix(asked, "0") {
+		t.Errorf("asked %q", asked)
+	}
+	s := sampleWith(t, "quayside-winch.yaml", nil)
+	r := s.Report(units.Metric)
+	d := s.Circuits[0].Duties[0]
+	page := dutyPage(printer{system: units.Metric}, d)
+	if f := figureNamed(page.Figures, "of that, fan and pumps of the cooling"); f.Value != d.Balance.CoolingDrawn().Total() || f.Value <= 0 {
+		t.Errorf("cooling in the losses: %+v", f)
+	}
+	if len(r.Decisions) > 0 && !strings.Contains(r.Decisions[0].Verdict, "range by its cost alone") {
+		t.Errorf("verdict %q", r.Decisions[0].Verdict)
+	}
+}

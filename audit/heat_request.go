@@ -47,7 +47,7 @@ func (s *Solution) Requests(system units.System) []Request {
 		case h.needsNone():
 			r.Missing = "No cooler is needed in these states: the walls take all the heat with the oil at " + p.degrees(h.Wanted) + ", in every duty and in the hottest hour."
 		default:
-			r.Groups = []RequestGroup{requestLoad(p, c), requestOil(p, h), requestFlow(p, h), requestCoolant(p, h), requestFitting(p, h)}
+			r.Groups = []RequestGroup{requestLoad(p, c), requestOil(p, h), requestFlow(p, h), requestCoolant(p, h), requestFitting(p, h), requestAsker()}
 			r.Cautions = requestCautions
 		}
 		out = append(out, r)
@@ -242,6 +242,11 @@ func requestFitting(p printer, h *HeatStudy) RequestGroup {
 		blank("Cleaning access, filters before the core", "maker"), blank("Rules to be met: pressure equipment, machinery, food, ships", "user"),
 		blank("Pressure drop offered warm and cold; sound power; mass; delivery", "maker"))
 	return g
+}
+
+// requestAsker is who asks, to be filled in.
+func requestAsker() RequestGroup {
+	return RequestGroup{Title: "Asked by", Rows: []RequestRow{blank("Name, company, address", "user"), blank("Quantity, date wanted", "user")}}
 }
 
 // WriteRequestCSV writes the sheets as a table, one line a row.

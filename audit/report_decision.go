@@ -67,6 +67,9 @@ func paybackText(p Payback) string {
 	if p.None != "" {
 		return p.None
 	}
+	if p.Low < p.High {
+		return "simple payback " + p.String() + ", the range by its cost alone"
+	}
 	return "simple payback " + p.String()
 }
 
