@@ -52,6 +52,7 @@ func siteCheck(args []string, out, errs io.Writer) int {
 func printSiteCheck(w io.Writer, p *sitecheck.Plan, readings []audit.Reading) {
 	heading(w, "Site check: "+p.Circuit)
 	wrap(w, sitecheck.Intro)
+	wrap(w, p.Basis())
 	wrap(w, "States: "+sitecheck.StateText())
 	rows := [][]string{{"", "stopped", "idling", "holding", "working"}}
 	for _, pt := range p.Points {
@@ -60,6 +61,9 @@ func printSiteCheck(w io.Writer, p *sitecheck.Plan, readings []audit.Reading) {
 			row = append(row, p.Shown(pt, s.Name))
 		}
 		rows = append(rows, row)
+		if drawn := p.RowAsDrawn(pt); drawn != nil {
+			rows = append(rows, append([]string{"  as drawn"}, drawn...))
+		}
 	}
 	fmt.Fprintln(w)
 	table(w, rows)

@@ -70,15 +70,12 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 	if dry := h.Dry(); len(dry) > 0 {
 		say(circuit.Note, "no oil passes the cooler (%s) in %s: nothing is cooled while that goes on", h.Section.Word("cooler_place"), circuit.Names(dry))
 	}
-	for _, k := range h.Checks {
-		if !k.Passed && !k.Fault && !math.IsNaN(k.Highest) {
-			level := circuit.Note
-			if k.Highest >= h.Alarm {
-				level = circuit.Warns
-			}
-			say(level, "oil at %s, %s: %s", degreesOrMore(p, k.Highest), k.Case, k.Text)
-			break // the mildest case says enough
+	if k := h.worstCheck(); k != nil {
+		level, more := circuit.Note, ""
+		if k.AboveAlarm {
+			level, more = circuit.Warns, " of "+p.degrees(h.Alarm)
 		}
+		say(level, "oil at %s, %s: %s%s", degreesOrMore(p, k.Highest), k.Case, k.Text, more)
 	}
 	if h.Few != "" {
 		say(circuit.Note, "heat by oil temperature: %s", h.Few)
@@ -171,9 +168,9 @@ func (s *Solution) temperatureTable(p printer, runs []*CircuitRun) Table {
 		})
 	}
 	h := runs[0].Warmth
-	t.Note = fmt.Sprintf("Oil, tank and steel as one heat capacity of %s, walls at %s; each circuit %s, monotone curves between them, missed by at most %s where they led to. "+
+	t.Note = fmt.Sprintf("Oil, tank and steel as one heat capacity of %s, walls at %s; each circuit %s, monotone curves between them%s. "+
 		"What is drawn a year is without cooling here; the figures of energy and money hold for oil at %s, and a circuit that runs warmer or colder draws as the row above says.",
-		p.in(h.Plant.Body.Capacity(), units.HeatCapacity, 3), p.in(h.Plant.Body.Walls, units.HeatCapacityRate, 3), h.describe(), units.Format(h.Missed, units.Percent, 2), p.degrees(s.Oil))
+		p.in(h.Plant.Body.Capacity(), units.HeatCapacity, 3), p.in(h.Plant.Body.Walls, units.HeatCapacityRate, 3), h.describe(), missedText(h.Missed), p.degrees(s.Oil))
 	for _, c := range runs {
 		for _, x := range c.Warmth.Cycles {
 			if !x.MeanIsEnough {
@@ -186,13 +183,14 @@ func (s *Solution) temperatureTable(p printer, runs []*CircuitRun) Table {
 }
 
 // coolingDrawn is what fan and pumps of the cooling draw a year [J].
-func (c *CircuitRun) coolingDrawn() (sum float64) {
-	for _, l := range c.Year.Losses {
-		if l.Block == coolingBlock {
-			sum += l.Energy.Total()
-		}
+func (c *CircuitRun) coolingDrawn() float64 { return c.Year.CoolingDrawn().Total() }
+
+// missedText says by how much the table of heat missed; nothing where that rounds to 0.
+func missedText(share float64) string {
+	if share < 5e-5 {
+		return ""
 	}
-	return sum
+	return ", missed by at most " + units.Format(share, units.Percent, 2) + " where they led to"
 }
 
 // placeText names the place of the cooler, and where that comes from.
@@ -218,7 +216,7 @@ func needTable(p printer, runs []*CircuitRun) Table {
 			case n.Heat <= 0:
 				return "none needed"
 			}
-			return p.cooler(n.Rate)
+			return p.cooler(n.Asked())
 		}))
 		across(&t, runs, "oil entering the cooler", of(func(n CoolerNeed) string { return ifCooled(n, p.degrees(n.Entering)) }))
 		across(&t, runs, "oil flow there, mean", of(func(n CoolerNeed) string { return ifCooled(n, p.in(n.Flow, units.Flow, 3)) }))
@@ -230,7 +228,7 @@ func needTable(p printer, runs []*CircuitRun) Table {
 		return "none"
 	})
 	t.Note = "Heat over the difference of the entering temperatures, at the mean flow of its place (" + runs[0].Warmth.placeText() +
-		"). Walls are credited here; fouling, altitude and reserve are not in it: the request sheet lists them."
+		"); where the oil comes in parts, warmer in some, and the march asks for more, that stands. Walls are credited here; fouling, altitude and reserve are not in it: the request sheet lists them."
 	for _, c := range runs {
 		for _, n := range c.Warmth.Needs {
 			if n.Fault != "" {
@@ -256,7 +254,7 @@ func checkTable(p printer, runs []*CircuitRun) Table {
 		across(&t, runs, runs[0].Warmth.Checks[i].Case, func(_ *CircuitRun, h *HeatStudy) string { return h.Checks[i].Cell(p.system) })
 	}
 	h := runs[0].Warmth
-	t.Note = fmt.Sprintf("✓ at or below %s, for faults no alarm within a day; ▲ above it; for faults the time to the alarm at %s, from the warmest moment of a hot day on. Hot day: air at %s in the mean.",
+	t.Note = fmt.Sprintf("✓ at or below %s, for faults no alarm within a day; ● above it and below the alarm, ▲ above the alarm; for faults the time to the alarm at %s, from the warmest moment of a hot day on. Hot day: air at %s in the mean.",
 		p.degrees(h.Wanted), p.degrees(h.Alarm), p.degrees(h.HotDay))
 	return t
 }
@@ -265,7 +263,10 @@ func checkTable(p printer, runs []*CircuitRun) Table {
 func (c HeatCheck) Cell(system units.System) string {
 	p := printer{system: system}
 	sign := "✓ "
-	if !c.Passed {
+	switch {
+	case !c.Passed && !c.Fault && !c.AboveAlarm && !math.IsNaN(c.Highest):
+		sign = "● "
+	case !c.Passed:
 		sign = "▲ "
 	}
 	switch {

@@ -47,7 +47,7 @@ func (s *Solution) Requests(system units.System) []Request {
 		case h.needless():
 			r.Missing = h.needlessText(p)
 		default:
-			r.Groups = []RequestGroup{requestLoad(p, c), requestOil(p, h), requestFlow(p, h), requestCoolant(p, h), requestFitting(p, h)}
+			r.Groups = []RequestGroup{requestLoad(p, c), requestOil(p, h), requestFlow(p, h), requestCoolant(p, h), requestFitting(p, h), requestAsker()}
 			r.Cautions = requestCautions
 		}
 		out = append(out, r)
@@ -63,7 +63,7 @@ func (h *HeatStudy) needless() bool {
 
 func (h *HeatStudy) needlessText(p printer) string {
 	design := h.Needs[len(h.Needs)-1]
-	text := fmt.Sprintf("No cooler is to be asked for: with %s going on in the hottest hour, air at %s, the walls of tank and machine give off the %s put in before the oil comes to %s.",
+	text := fmt.Sprintf("No cooler is needed: with %s going on in the hottest hour, air at %s, the walls of tank and machine give off the %s put in before the oil comes to %s.",
 		h.Loads[design.Load].Name, p.degrees(design.Air), p.power(design.Put), p.degrees(h.Wanted))
 	return text + " If a relief valve took all the power of " + p.power(h.Peak) + ": " + h.alarmText() + "; a switch that stops the machine there is the better protection."
 }
@@ -74,6 +74,13 @@ var requestCautions = []string{
 	"A cooler is weak against pressure: surges, and a cylinder whose bore side empties fast, can burst it. Give it a bypass and a line whose highest pressure is known.",
 	"In a case drain it must not raise the case pressure above what the shaft seal stands. Hot oil and surfaces burn. Pressure equipment and electrical work: " +
 		"local rules and licensed persons come before anything printed here.",
+}
+
+func capacityNote(n *CoolerNeed) string {
+	if n.Asked() > n.Heat/(n.Entering-n.Coolant)*(1+1e-6) {
+		return "more than heat over the entering difference: the oil comes in parts, each with its own flow and temperature"
+	}
+	return "heat over the entering difference"
 }
 
 func blank(name, who string) RequestRow { return RequestRow{Name: name, Note: who, Blank: true} }
@@ -96,14 +103,14 @@ func requestLoad(p printer, c *CircuitRun) RequestGroup {
 	case design.Fault != "":
 		add("Capacity, clean", "none does", design.Fault)
 	default:
-		add("Capacity, clean", p.cooler(design.Rate), "heat over the entering difference")
+		add("Capacity, clean", p.cooler(design.Asked()), capacityNote(&design))
 		factor := h.Fouling
 		note := "× " + units.Number(h.Fouling, 3) + " for fouling"
 		if alt := h.Section.number("altitude", &h.Oil); alt > 0 && h.Section.Word("cooler") != waterCooler {
 			factor /= math.Max(0.1, 1-0.1*alt/1000)
 			note += ", / " + units.Number(math.Max(0.1, 1-0.1*alt/1000), 3) + " for " + units.Number(alt, 3) + "\u202fm of altitude"
 		}
-		add("Capacity asked for", p.cooler(factor*design.Rate), note+"; no other reserve is in it")
+		add("Capacity asked for", p.cooler(factor*design.Asked()), note+"; no other reserve is in it")
 	}
 	g.Rows = append(g.Rows, blank("Reserve in the maker's figures", "maker"))
 	return g
@@ -238,6 +245,11 @@ func requestFitting(p printer, h *HeatStudy) RequestGroup {
 		blank("Cleaning access, filters before the core", "maker"), blank("Rules to be met: pressure equipment, machinery, food, ships", "user"),
 		blank("Pressure drop offered warm and cold; sound power; mass; delivery", "maker"))
 	return g
+}
+
+// requestAsker is who asks, to be filled in.
+func requestAsker() RequestGroup {
+	return RequestGroup{Title: "Asked by", Rows: []RequestRow{blank("Name, company, address", "user"), blank("Quantity, date wanted", "user")}}
 }
 
 // WriteRequestCSV writes the sheets as a table, one line a row.

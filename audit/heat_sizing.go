@@ -16,6 +16,15 @@ type CoolerNeed struct {
 	Fault string // why none does, or ""
 }
 
+// Asked is the capacity that is asked for [W/K]: heat over the difference of the entering temperatures as they are printed, and
+// what the march over the parts of the flow asks for where that is more.
+func (n *CoolerNeed) Asked() float64 {
+	if d := n.Entering - n.Coolant; n.Rate > 0 && d > 0 {
+		return math.Max(n.Rate, n.Heat/d)
+	}
+	return n.Rate
+}
+
 // needs sizes the cooler for an ordinary day, and for the duty that asks for the largest cooler in the hottest hour. Walls are credited.
 func (h *HeatStudy) needs() ([]CoolerNeed, error) {
 	var out []CoolerNeed
@@ -73,7 +82,9 @@ type HeatCheck struct {
 	Time    float64 // s to the alarm or to readiness; NaN when it does not come, or is not asked for
 	Passed  bool
 	Text    string // what it means
-	Fault   bool   // a fault of the machine, which no cooler need stand: the time to the alarm is what counts
+	// AboveAlarm says that the oil comes to the alarm; of a fault Time says it.
+	AboveAlarm bool
+	Fault      bool // a fault of the machine, which no cooler need stand: the time to the alarm is what counts
 }
 
 // checks works out the cases.
@@ -105,9 +116,21 @@ func (h *HeatStudy) below(name string, theta float64) HeatCheck {
 	case theta < h.Alarm:
 		c.Text = "above the temperature wanted, below the alarm"
 	default:
-		c.Text = "above the alarm"
+		c.Text, c.AboveAlarm = "above the alarm", true
 	}
 	return c
+}
+
+// worstCheck is the case without a fault in which the oil comes highest above the temperature wanted; nil where none does.
+func (h *HeatStudy) worstCheck() *HeatCheck {
+	var worst *HeatCheck
+	for i := range h.Checks {
+		k := &h.Checks[i]
+		if !k.Passed && !k.Fault && !math.IsNaN(k.Highest) && (worst == nil || k.Highest > worst.Highest) {
+			worst = k
+		}
+	}
+	return worst
 }
 
 // faultHours is how long a fault is followed.

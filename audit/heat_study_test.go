@@ -221,7 +221,7 @@ func TestRequestSheet(t *testing.T) {
 	}
 	p := printer{system: units.Metric}
 	for name, want := range map[string]string{
-		"Heat to be taken, mean": p.power(need.Heat), "Capacity, clean": p.cooler(need.Rate), "Capacity asked for": p.cooler(1.2 * need.Rate),
+		"Heat to be taken, mean": p.power(need.Heat), "Capacity, clean": p.cooler(need.Asked()), "Capacity asked for": p.cooler(1.2 * need.Asked()),
 		"Grade": "ISO VG 46", "Water entering": "18.0\u202f°C", "Position": "return line",
 	} {
 		if found[name].Value != want {

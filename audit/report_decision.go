@@ -34,7 +34,7 @@ func (s *Solution) verdict(p printer, c *Comparison) string {
 	if c.SavedDrawn < 0 {
 		less = "more"
 	}
-	text := fmt.Sprintf("%s draws %s a year where %s draws %s: %s %s", a.Circuit.Name, p.kWh(a.Year.Drawn.Total()),
+	text := lacksMotion(c) + fmt.Sprintf("%s draws %s a year where %s draws %s: %s %s", a.Circuit.Name, p.kWh(a.Year.Drawn.Total()),
 		b.Circuit.Name, p.kWh(b.Year.Drawn.Total()), p.kWh(math.Abs(c.SavedDrawn)), less)
 	if known(c.SavedShare) {
 		text += " (" + p.share(math.Abs(c.SavedShare)) + ")"
@@ -45,9 +45,30 @@ func (s *Solution) verdict(p printer, c *Comparison) string {
 	return text + "."
 }
 
+// lacksMotion says that the circuit as found does not do the work that the other does, "" where it does.
+func lacksMotion(c *Comparison) string {
+	worst := ShortfallPair{}
+	for _, x := range c.Shortfalls {
+		if x.Base.Seconds-x.Proposal.Seconds > worst.Base.Seconds-worst.Proposal.Seconds {
+			worst = x
+		}
+	}
+	if worst.Base.Seconds-worst.Proposal.Seconds < leastLack {
+		return ""
+	}
+	return fmt.Sprintf("Motion is missing in %s: in %s axis %s lacks %s a cycle, so the two do not do the same work and their energies cannot be compared as they stand. ",
+		c.Base.Circuit.Name, worst.Duty, worst.Axis, seconds(worst.Base.Seconds))
+}
+
+// leastLack [s] of motion a cycle missing makes two years no longer those of the same work.
+const leastLack = 1e-2
+
 func paybackText(p Payback) string {
 	if p.None != "" {
 		return p.None
+	}
+	if p.Low < p.High {
+		return "simple payback " + p.String() + ", the range by its cost alone"
 	}
 	return "simple payback " + p.String()
 }

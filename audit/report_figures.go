@@ -37,6 +37,9 @@ func dutyPage(p printer, d *DutyRun) DutyPage {
 		energy("passed between "+circuit.Names(e.Blocks)+" through their shaft", e.Energy, trapezoid+", P = min(Σ max(P_i, 0), Σ max(−P_i, 0)) over the machines on the shaft; it stays in the circuit and stands on no side of the balance")
 	}
 	energy("lost in all", b.LossEnergy().Total(), "Σ of all losses")
+	if x := b.CoolingDrawn().Total(); x > 0 {
+		energy("of that, fan and pumps of the cooling", x, "Σ of losses of the cooling; what the blocks of the circuit lose is the rest")
+	}
 	energy("heat to the oil", b.HeatToOil().Total(), "Σ of losses with sink oil")
 	add("closure", b.Closure(), units.Format(b.Closure(), units.Percent, 2), Calculation{
 		"|in − returned − work − stored − losses| / (in + |work from driving loads| + |stored|)",

@@ -238,7 +238,11 @@ func gateTable(gates []circuit.Gate) Table {
 
 // GateText writes what is asked, its limit, and whether it is passed, "" where no limit is given.
 func GateText(g circuit.Gate) (asked, limit, passed string) {
-	asked, limit = units.Format(g.Value, g.Unit, 3), "not given"
+	value := g.Value
+	if math.Abs(value) < 1e-6*math.Abs(g.Limit) { // what rounding leaves
+		value = 0
+	}
+	asked, limit = units.Format(value, g.Unit, 3), "not given"
 	if known(g.Limit) {
 		limit = units.Format(g.Limit, g.Unit, 3)
 		passed = map[bool]string{true: "passed", false: "not passed"}[g.Passed]

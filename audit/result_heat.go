@@ -65,7 +65,7 @@ func (s *Solution) warmthResult(h *HeatStudy) *WarmthResult {
 		Drawn: h.Section.Drawn.Block, Installed: Number(h.Rate()), Needed: []CoolerNeedResult{}, Checks: []HeatCheckResult{},
 		DrawnSo: Number(found / kWh), DrawnStated: Number(stated / kWh)}
 	for _, n := range h.Needs {
-		rate := n.Rate
+		rate := n.Asked()
 		if n.Fault != "" {
 			rate = math.NaN()
 		}

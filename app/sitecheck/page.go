@@ -131,7 +131,7 @@ func (p *Page) show(plan *sitecheck.Plan) {
 	}
 	title := widget.NewLabelWithStyle("Site check: "+plan.Circuit, fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
 	intro, states, caution := label(""), label(""), label("sitecheck.caution")
-	intro.SetText(p.ctx.Local(sitecheck.Intro))
+	intro.SetText(p.ctx.Local(sitecheck.Intro + " " + plan.Basis()))
 	states.SetText("States: " + sitecheck.StateText())
 	states.Importance = widget.LowImportance
 	caution.SetText("▲ " + sitecheck.Cautions)

@@ -23,6 +23,9 @@ type reading struct {
 
 func (p *Page) reading(pt sitecheck.Point, state string) *reading {
 	r := &reading{state: state, point: pt.Name, model: p.ctx.Local(p.plan.Shown(pt, state))}
+	if drawn := p.plan.AsDrawn(pt, state); drawn != "" {
+		r.model += ", as drawn " + p.ctx.Local(drawn)
+	}
 	r.field = widgets.Name(widgets.NewField("", func(text string) error { return p.put(r, pt, text) }), "sitecheck."+state+"."+pt.Name)
 	r.field.Scroll = fyne.ScrollHorizontalOnly
 	r.note = label("sitecheck." + state + "." + pt.Name + ".says")
@@ -67,7 +70,7 @@ func (p *Page) compare() {
 	for _, r := range p.fields {
 		key := r.state + "." + r.point
 		r.field.SetValue(read[key], "")
-		text, importance := "model "+r.model, widget.LowImportance
+		text, importance := "good "+r.model, widget.LowImportance
 		if s, ok := says[key]; ok {
 			text += ": " + p.ctx.Local(s.Words)
 			if s.Off > 2 {

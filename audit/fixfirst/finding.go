@@ -69,6 +69,11 @@ func (f *Finding) Name() string {
 	return f.Block + ": " + f.Rule
 }
 
+// Resizes reports whether its cure is a part of another size, not one put in order or exchanged for its like.
+func (f *Finding) Resizes() bool {
+	return f.Effort == Invest && f.Rule != wornPumpRule && f.Rule != wornMotorRule
+}
+
 // key tells faults of one circuit apart.
 func (f *Finding) key() string { return f.Rule + "|" + f.Block }
 

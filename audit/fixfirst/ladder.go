@@ -17,6 +17,7 @@ import (
 type Step struct {
 	*Finding
 	Cure     Cure    // that was priced
+	Taken    Cure    // that was priced after those above it
 	Alone    Saving  // cured alone
 	InOrder  Saving  // cured after those above it
 	Without  Year    // with it cured alone
@@ -35,6 +36,7 @@ type Ladder struct {
 	Cured    Year // with all cures: the circuit as found that a proposal is to beat
 	Class    map[Class]Saving
 	Splits   []Split // by proposal
+	Lacks    float64 // s a cycle by which axes fall short as found, and do no more with all cures
 	Edits    Cure    // all cures that were priced, in order
 }
 
@@ -115,7 +117,7 @@ func Climb(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt Op
 	if err != nil {
 		return nil, err
 	}
-	l.Cured = yearOf(last)
+	l.Cured, l.Lacks = yearOf(last), base.short-last.short
 	for _, c := range s.Comparisons {
 		if c.Base == run && c.Missing == "" {
 			l.Splits = append(l.Splits, l.split(c, base, last))
@@ -152,7 +154,7 @@ func (l *Ladder) alone(ctx context.Context, f *audit.File, base outcome, cache *
 			defer func() { <-room }()
 			defer m.add()
 			errs[i] = guarded(x, func() error {
-				_, edits, o, why, err := cache.choose(ctx, f, base, x.Finding)
+				_, edits, o, why, err := cache.choose(ctx, f, base, x.Finding, true)
 				if err == nil && why == "" {
 					x.Cure, x.Alone, x.Without, x.Regained = edits, less(base, o), yearOf(o), base.short-o.short
 				}
@@ -201,7 +203,7 @@ func (l *Ladder) inOrder(ctx context.Context, f *audit.File, last outcome, cache
 		if x.Unpriced != "" {
 			continue
 		}
-		g, edits, o, why, err := cache.choose(ctx, f, last, x.Finding)
+		g, edits, o, why, err := cache.choose(ctx, f, last, x.Finding, false)
 		if err != nil {
 			return last, err
 		}
@@ -209,7 +211,7 @@ func (l *Ladder) inOrder(ctx context.Context, f *audit.File, last outcome, cache
 			x.Unpriced = "after those above it: " + why
 			continue
 		}
-		x.InOrder, x.Before, x.After = less(last, o), yearOf(last), yearOf(o)
+		x.Taken, x.InOrder, x.Before, x.After = edits, less(last, o), yearOf(last), yearOf(o)
 		l.Class[x.Class] = l.Class[x.Class].Plus(x.InOrder)
 		l.Edits = append(l.Edits, edits...)
 		f, last = g, o
@@ -236,15 +238,16 @@ func (l *Ladder) split(c *audit.Comparison, base, cured outcome) Split {
 	return s
 }
 
+// leastLack [s] of motion a cycle missing makes two years no longer those of the same work.
+const leastLack = 1e-2
+
 // Note says what the price does not, in words; "" where it says all.
 func (x *Step) Note() string {
 	switch {
 	case x.Unpriced != "":
 		return "No price: " + x.Unpriced + "."
-	case x.Regained > 1e-2 && x.Alone.Energy < 0:
-		return fmt.Sprintf("It costs energy, for the machine then makes its motions in time again: %s a cycle that axes now fall short.", seconds(x.Regained))
-	case x.Regained > 1e-2:
-		return fmt.Sprintf("The machine also gains %s a cycle that axes now fall short.", seconds(x.Regained))
+	case x.Regained > leastLack:
+		return fmt.Sprintf("No saving can be told: the machine as found delivers less (%s a cycle missing), and with this cured it makes those motions again.", seconds(x.Regained))
 	case x.Alone.Energy <= 0 && x.InOrder.Energy > 0:
 		return "Alone it saves nothing, for what is gained here is lost at the faults above it; with those cured it does."
 	case x.Alone.Energy <= 0:
@@ -271,10 +274,21 @@ func (l *Ladder) Faultless() Cure {
 	var out Cure
 	for _, x := range l.Steps {
 		if !x.Habit && x.Unpriced == "" {
-			out = append(out, x.Cure...)
+			out = append(out, x.Taken...)
 		}
 	}
 	return out
+}
+
+// Restored is the machine with what is a fault set or repaired to what it should be, and the names of those faults. No part
+// is exchanged for one of another size: what is read at the machine that stands there is compared with it.
+func (l *Ladder) Restored() (edits Cure, names []string) {
+	for _, x := range l.Steps {
+		if !x.Habit && !x.Resizes() && x.Unpriced == "" {
+			edits, names = append(edits, x.Taken...), append(names, x.Name())
+		}
+	}
+	return edits, names
 }
 
 // Total is what all priced cures save together.

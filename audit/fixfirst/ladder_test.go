@@ -8,6 +8,7 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
+	"barlitre/machines/units"
 )
 
 func near(a, b, scale float64) bool { return math.Abs(a-b) <= 1e-6*math.Abs(scale) }
@@ -169,4 +170,74 @@ func TestAddCured(t *testing.T) {
 		}
 	}
 	t.Error("it was not added")
+}
+
+// A winch whose relief valve has sunk to 200 bar must still lift its load once the price is taken: the cure that is priced
+// leaves every gate passed that the machine passes as found. At 173 bar, 15 % below the valve, its motor does not break away.
+func TestCureLeavesTheMachineWorking(t *testing.T) {
+	f := asFound(twins["winch, relief low"].file(t, sources(t)))
+	s := solve(t, f)
+	passed := func(run *audit.CircuitRun) map[string]bool {
+		out := map[string]bool{}
+		for _, d := range run.Duties {
+			for _, g := range d.Gates {
+				out[d.Duty.Name+g.Block+g.Name] = g.Passed
+			}
+		}
+		return out
+	}
+	before := passed(s.Circuits[0])
+	tooLow := f.Clone()
+	if err := tooLow.Set("As found/P1.set_pressure", "173 bar"); err != nil {
+		t.Fatal(err)
+	}
+	spoilt := false
+	for k, ok := range passed(solve(t, tooLow).Circuits[0]) {
+		spoilt = spoilt || before[k] && !ok
+	}
+	if !spoilt {
+		t.Fatal("173 bar spoils nothing: the case tells nothing")
+	}
+	l, err := fixfirst.All(context.Background(), s, fixfirst.Options{})
+	if err != nil || len(l[0].Edits) == 0 {
+		t.Fatal(err)
+	}
+	g, err := fixfirst.Apply(f, l[0].Faultless())
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k, ok := range passed(solve(t, g).Circuits[0]) {
+		if before[k] && !ok {
+			t.Errorf("%s is no longer passed with %s", k, l[0].Faultless())
+		}
+	}
+}
+
+// A worn pump that cannot reach the speed saves nothing that could be compared: the page says first that motion is missing.
+func TestMissingMotionIsSaidFirst(t *testing.T) {
+	f := asFound(twins["press, pump worn"].file(t, sources(t)))
+	if err := f.Set("As found/P1.wear", "12"); err != nil {
+		t.Fatal(err)
+	}
+	s := solve(t, f)
+	short := 0.0
+	for _, d := range s.Circuits[0].Duties {
+		for _, x := range d.Shortfalls {
+			short += x.Seconds
+		}
+	}
+	if short < 0.1 {
+		t.Fatalf("%g s are missing: the case tells nothing", short)
+	}
+	l, err := fixfirst.All(context.Background(), s, fixfirst.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := l[0].Page(units.Metric)
+	if !strings.HasPrefix(p.Verdict, `The circuit "As found" as found does not do its work`) || strings.Contains(p.Verdict, "less,") {
+		t.Errorf("verdict %q", p.Verdict)
+	}
+	if text := p.Rows[len(p.Rows)-1].Cells[3].Text; text != "not comparable" {
+		t.Errorf("all, in order: %q", text)
+	}
 }

@@ -35,14 +35,15 @@ var unknown = Saving{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
 type outcome struct {
 	drawn, money, co2, heat float64
 	short                   float64 // s by which axes fall short in a cycle, summed
-	fault                   string  // why there is none
+	motion                  motion
+	fault                   string // why there is none
 }
 
 func outcomeOf(run *audit.CircuitRun) outcome {
 	if run.Year == nil || !run.Year.Complete {
 		return outcome{fault: "a duty could not be solved"}
 	}
-	o := outcome{drawn: run.Year.Drawn.Total(), money: run.Money.Net(), co2: run.Money.CO2, heat: run.Heat.Year.Mean}
+	o := outcome{drawn: run.Year.Drawn.Total(), money: run.Money.Net(), co2: run.Money.CO2, heat: run.Heat.Year.Mean, motion: motionOf(run)}
 	for _, d := range run.Duties {
 		if d.Certificate.Unbalanced > 0 {
 			o.fault = fmt.Sprintf("%d time steps of %s could not be balanced", d.Certificate.Unbalanced, d.Duty.Name)
@@ -118,9 +119,14 @@ func (c *Cache) solve(ctx context.Context, f *audit.File, name string) (outcome,
 	return o, nil
 }
 
-// choose takes the first cure of a finding that can be solved and leaves the motion as it was before.
-func (c *Cache) choose(ctx context.Context, f *audit.File, before outcome, x *Finding) (*audit.File, Cure, outcome, string, error) {
+// choose takes the first cure of a finding that can be solved and leaves the machine doing all that it did before: no axis
+// slower, no gate missed that was passed. A repair cured alone may miss gates, for other faults may drive the sound part
+// harder than the worn one; it may not once they are cured. Where gates are missed as it is, a cure that leaves fewer of them goes first.
+func (c *Cache) choose(ctx context.Context, f *audit.File, before outcome, x *Finding, alone bool) (*audit.File, Cure, outcome, string, error) {
 	why := "no edit of the drawing stands for its cure"
+	var best *audit.File
+	var with Cure
+	var found outcome
 	for _, edits := range x.Cures {
 		g, err := Apply(f, edits)
 		if err != nil {
@@ -131,14 +137,23 @@ func (c *Cache) choose(ctx context.Context, f *audit.File, before outcome, x *Fi
 		if err != nil {
 			return nil, nil, o, "", err
 		}
-		switch {
-		case o.fault != "":
+		if o.fault != "" {
 			why = o.fault
-		case o.short > before.short+1e-3:
-			why = "every cure tried makes an axis slower than it is"
-		default:
-			return g, edits, o, "", nil
+			continue
 		}
+		if spoilt := o.motion.spoils(before.motion, !alone || x.Class != Repair); spoilt != "" {
+			why = "of every cure tried the machine would do less than it does: " + spoilt
+			continue
+		}
+		if best == nil || len(o.motion.missed) < len(found.motion.missed) {
+			best, with, found = g, edits, o
+		}
+		if len(o.motion.missed) == 0 {
+			break
+		}
+	}
+	if best != nil {
+		return best, with, found, "", nil
 	}
 	return nil, nil, outcome{}, why, nil
 }

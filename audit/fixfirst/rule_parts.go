@@ -11,6 +11,11 @@ import (
 	"barlitre/machines/units"
 )
 
+const (
+	wornPumpRule  = "worn pump"
+	wornMotorRule = "worn motor"
+)
+
 // wornPump finds pumps whose slip is far above that of a new one, as given, by a wear factor, or from the case drain.
 func wornPump(p *plant) []*Finding {
 	var out []*Finding
@@ -34,7 +39,7 @@ func wornPump(p *plant) []*Finding {
 		if was <= 0 || slip < 2*was || share < 0.08 {
 			continue
 		}
-		f := p.found(b, map[bool]string{true: "worn motor", false: "worn pump"}[b.Kind == "motor"], Repair, Invest)
+		f := p.found(b, map[bool]string{true: wornMotorRule, false: wornPumpRule}[b.Kind == "motor"], Repair, Invest)
 		f.Param = edits[0].Target[len(p.C.Name)+len(b.ID)+2:]
 		top := p.Highest(b.ID+".P.p", look.Moving)
 		if b.Kind == "motor" {

@@ -11,6 +11,9 @@ import (
 
 const settingCaution = "A relief valve protects people and machine. It is set and sealed by the machine's maker or a qualified person, and never raised to save energy."
 
+// hotOutlet warns of the outlet of a valve that spills.
+const hotOutlet = " Do not touch the outlet: it and the oil in it burn where the valve spills."
+
 // reliefAbove is how far a relief valve cracks above a compensator: 10 % is the least that trade literature asks
 // (10 to 15 %); at 3 % and less the two work at once.
 const (
@@ -44,10 +47,10 @@ func reliefAtCompensator(p *plant) []*Finding {
 				{"spilled while nothing moves", kilowattHours(spill.Idle + spill.Holding), "nothing"},
 				{"spilled a year in all", kilowattHours(spill.Total()), "nothing"},
 			}
-			f.Do = fmt.Sprintf("Dead-head the pump with nothing moving and read its pressure; feel the outlet of %s. Find out from the name plate which of the two settings is wrong. If it is the compensator, turn it down until it stands 10 to 15 %% below the relief valve; if it is the relief valve, have the maker or a qualified person put it right.", rv.ID)
-			f.Caution = settingCaution
+			f.Do = fmt.Sprintf("Dead-head the pump with nothing moving and read its pressure, with a gauge to at least "+p.bar(1.5*math.Max(ps, pc))+"; measure the outlet of %s with a contactless thermometer. Find out from the name plate which of the two settings is wrong. If it is the compensator, turn it down until it stands 10 to 15 %% below the relief valve; if it is the relief valve, have the maker or a qualified person put it right.", rv.ID)
+			f.Caution = settingCaution + hotOutlet
 			f.Basis = "relief 10 to 15 % above compensator: trade literature on heat detection; 3 % as \"at\": common practice, no source"
-			f.Cures = p.pressures(lower, pump, "set_pressure", pc/reliefAbove, pc/1.1, pc/1.06)
+			f.Cures = p.pressures(lower, pump, "set_pressure", pc/reliefAbove, pc/1.1, pc/1.06) // where none of these does the work, the valve is what is wrong
 			f.Cures = append(f.Cures, p.shut(rv, 1.15*ps)...)
 			f.because = []string{(&Finding{Rule: ruleReliefOpen, Block: rv.ID}).key()}
 			out = append(out, f)
@@ -89,8 +92,8 @@ func reliefInWork(p *plant) []*Finding {
 			{"highest pressure there", p.bar(p0.V), ""},
 			{"spilled a year", kilowattHours(spill.Total()), "below 0.5 % of energy drawn"},
 		}
-		f.Do = fmt.Sprintf("Feel the outlet of %s at work: it should be no warmer than the tank. Compare its setting with the name plate and the drawing; look for a worn seat, a weak spring, dirt under the cone. Restore what the drawing says, or take load off.", rv.ID)
-		f.Caution = settingCaution + " The price below takes the valve as shut for the calculation alone; it is no setting."
+		f.Do = fmt.Sprintf("Measure the outlet of %s at work with a contactless thermometer: it should be no warmer than the tank. Compare its setting with the name plate and the drawing; look for a worn seat, a weak spring, dirt under the cone. Restore what the drawing says, or take load off.", rv.ID)
+		f.Caution = settingCaution + hotOutlet + " The price below takes the valve as shut for the calculation alone; it is no setting."
 		f.Basis = "no flow over a relief valve in normal work: trade literature; 0.5 % of energy drawn: common practice, no source"
 		f.Cures = p.shut(rv, 1.15*math.Max(p0.V, cracks(rv)))
 		for _, k := range []float64{1.5, 2} { // where a spilling valve hides how much pressure the work needs

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"barlitre/audit"
 	"barlitre/audit/look"
@@ -282,16 +283,19 @@ func runsIdle(p *plant) []*Finding {
 			continue
 		}
 		drawn := p.Run.Year.Duties[i].Drawn
-		mean := drawn / d.Duty.Hours
+		mean, cooling := drawn/d.Duty.Hours, d.Balance.CoolingDrawn().Total()/d.Balance.Cycle
 		if drawn < 0.01*p.Drawn() {
 			continue
 		}
 		f := p.found(nil, "pump kept running idle", StopStart, NoCost)
 		f.Habit, f.Duty = true, d.Duty.Name
-		f.Text = fmt.Sprintf("In %s nothing moves for %s a year and the motor draws %s.", d.Duty.Name, yearHours(d.Duty.Hours), p.Shown(mean, units.Power))
+		f.Text = fmt.Sprintf("In %s nothing moves for %s a year and the motor draws %s.", d.Duty.Name, yearHours(d.Duty.Hours), p.Shown(mean-cooling, units.Power))
+		if cooling > 0 {
+			f.Text = strings.TrimSuffix(f.Text, ".") + ", fan and pumps of the cooling " + p.Shown(cooling, units.Power) + "."
+		}
 		f.Evidence = []Quantity{
 			{"hours a year", yearHours(d.Duty.Hours) + ", " + percent(d.Duty.Hours/p.Run.Year.Hours) + " of all", "as few as the work allows"},
-			{"mean power drawn meanwhile", p.Shown(mean, units.Power), ""},
+			{"mean power drawn meanwhile, in all", p.Shown(mean, units.Power), ""},
 			{"drawn a year", kilowattHours(drawn) + ", " + percent(drawn/p.Drawn()) + " of all", ""},
 		}
 		f.Do = "Switch the motor off in breaks of 20 minutes and more, by hand or by a timer. Name somebody who does it. The oil cools slowly; a short warm-up is seldom needed."

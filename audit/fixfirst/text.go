@@ -135,6 +135,10 @@ func (w words) verdict(l *Ladder) string {
 	case habits > 1:
 		faults += fmt.Sprintf(", and %d ways of running it that cost money", habits)
 	}
+	if l.Lacks > leastLack {
+		return fmt.Sprintf("The circuit \"%s\" as found does not do its work: %s of motion a cycle are missing. %s. What the cures save cannot be compared, for the machine as found delivers less; put right in the order below it does that work and draws %s a year. That is the machine a proposal has to beat.",
+			l.Circuit, seconds(l.Lacks), faults, w.energy(l.Cured.Drawn))
+	}
 	share := ""
 	if l.AsFound.Drawn > 0 {
 		share = ", " + units.Format(total.Energy/l.AsFound.Drawn, units.Percent, 3)
@@ -147,15 +151,28 @@ func (w words) ladder(l *Ladder) []Row {
 	var rows []Row
 	for i, x := range l.Steps {
 		r := Row{Name: fmt.Sprintf("%d  %s", i+1, x.Name()), Cells: []audit.Figure{{Text: x.Effort.short()}}}
-		r.Cells = append(r.Cells, w.figures(x.Name()+", cured alone", x.Alone, l.AsFound, x.Without, x.Cure.String())...)
-		r.Cells = append(r.Cells, w.figures(x.Name()+", after those above it", x.InOrder, x.Before, x.After, x.Cure.String())...)
+		alone := w.figures(x.Name()+", cured alone", x.Alone, l.AsFound, x.Without, x.Cure.String())
+		order := w.figures(x.Name()+", after those above it", x.InOrder, x.Before, x.After, x.Taken.String())
+		if x.Regained > leastLack {
+			alone, order = notCompared(), notCompared()
+		}
+		r.Cells = append(append(r.Cells, alone...), order...)
 		rows = append(rows, r)
 	}
 	if len(l.Steps) > 0 {
 		r := Row{Name: "all, in order", Sum: true, Cells: []audit.Figure{{}, {}, {}}}
-		rows = append(rows, Row{r.Name, append(r.Cells, w.figures("all, in order", l.Total(), l.AsFound, l.Cured, l.Edits.String())...), true})
+		all := w.figures("all, in order", l.Total(), l.AsFound, l.Cured, l.Edits.String())
+		if l.Lacks > leastLack {
+			all = notCompared()
+		}
+		rows = append(rows, Row{r.Name, append(r.Cells, all...), true})
 	}
 	return rows
+}
+
+// notCompared stands for a saving between a machine that does its work and one that does not.
+func notCompared() []audit.Figure {
+	return []audit.Figure{{Value: math.NaN(), Text: "not comparable"}, {Value: math.NaN(), Text: "–"}}
 }
 
 // figures are a saving in energy and money, with where they come from.
@@ -186,7 +203,7 @@ func (w words) item(n int, x *Step) Item {
 			it.Where += ", at " + units.Format(x.Time, units.Preferred(units.Time, units.Metric), 4)
 		}
 	}
-	if x.Unpriced == "" {
+	if x.Unpriced == "" && x.Regained <= leastLack {
 		it.Price = fmt.Sprintf("%s a year alone, %s in order; %s.", w.both(x.Alone), w.both(x.InOrder), x.Effort)
 	}
 	return it
@@ -212,6 +229,11 @@ func (w words) split(l *Ladder, s Split) SplitPage {
 		w.both(s.Whole), s.Proposal, w.both(l.Total()), l.Circuit, w.both(s.Architecture))
 	if s.Whole.Energy <= 0 || l.Total().Energy <= 0 {
 		page.Text = fmt.Sprintf("Against %s with its faults cured, %s saves %s.", l.Circuit, s.Proposal, w.both(s.Architecture))
+	}
+	if l.Lacks > leastLack { // no split of a saving against a machine that does less
+		page.Text = fmt.Sprintf("Against %s as found it cannot be compared: that delivers less (%s a cycle missing). Against %s with its faults cured, %s saves %s.", l.Circuit, seconds(l.Lacks), l.Circuit, s.Proposal, w.both(s.Architecture))
+		page.Rows = []Row{page.Rows[len(page.Rows)-2]}
+		page.Rows[0].Cells[len(page.Rows[0].Cells)-1].Text = "–"
 	}
 	if s.Payback.None == "" && l.Total().Energy != 0 {
 		page.Text += fmt.Sprintf(" By what it adds alone, its cost comes back in %s.", s.Payback)

@@ -21,6 +21,7 @@ func (l *layout) siteCheck() {
 func (l *layout) plan(p *sitecheck.Plan) {
 	small := l.small()
 	l.lead(side, "Circuit “"+p.Circuit+"”.", sitecheck.Intro, l.body())
+	l.lead(side, "Good.", p.Basis(), small)
 	l.lead(side, "States.", upper(sitecheck.StateText()), small)
 	t := table{cols: []column{{"where, and gauge", false}, {"stopped", true}, {"idling", true}, {"holding", true}, {"working", true}, {"bad looks like", false}, {"caution for this point", false}}}
 	for _, pt := range p.Points {
@@ -28,7 +29,11 @@ func (l *layout) plan(p *sitecheck.Plan) {
 		for _, s := range sitecheck.States() {
 			cells = append(cells, p.Shown(pt, s.Name))
 		}
-		t.rows = append(t.rows, row{cells: append(cells, p.Bad(pt), pt.Caution)}, blankRow(p, pt))
+		t.rows = append(t.rows, row{cells: append(cells, p.Bad(pt), pt.Caution)})
+		if drawn := p.RowAsDrawn(pt); drawn != nil {
+			t.rows = append(t.rows, row{cells: append(append([]string{"as drawn"}, drawn...), "", "")})
+		}
+		t.rows = append(t.rows, blankRow(p, pt))
 	}
 	l.table(t)
 	l.lead(side, "Before you begin.", sitecheck.Cautions, l.body())

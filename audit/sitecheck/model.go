@@ -96,9 +96,10 @@ func valueOf(p *look.Plant, pt Point, s State) Value {
 	return v
 }
 
-// yearMean is the mean power drawn in a state over the year.
+// yearMean is the mean power that the only drive draws in a state over the year: all that is drawn, less the fan and the
+// pumps of the cooling, which hang on feeds of their own.
 func yearMean(p *look.Plant, state string) float64 {
-	e, t := p.Run.Year.Drawn, p.Run.Year.Seconds
+	e, t := p.Run.Year.Drawn.Plus(p.Run.Year.CoolingDrawn().Times(-1)), p.Run.Year.Seconds
 	switch state {
 	case "idling":
 		return e.Idle / t.Idle

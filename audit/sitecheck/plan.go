@@ -4,6 +4,7 @@ import (
 	"context"
 	"math"
 	"sort"
+	"strings"
 
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
@@ -16,7 +17,10 @@ type Plan struct {
 	Circuit string
 	System  units.System
 	Points  []Point
-	Sound   Model
+	Sound   Model  // with the known faults cured
+	Drawn   Model  // as drawn; nil where no fault is known, and sound is as drawn
+	Known   string // those faults
+	Changed []string
 	Faults  []*Fault
 }
 
@@ -37,7 +41,7 @@ func NewPlan(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt 
 	if p := opt.Cache.get(key); p != nil {
 		return p, nil
 	}
-	sound, asDrawn, err := cured(ctx, s, run, opt)
+	sound, asDrawn, edits, err := cured(ctx, s, run, opt)
 	if err != nil {
 		return nil, err
 	}
@@ -48,32 +52,35 @@ func NewPlan(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt 
 		return nil, err
 	}
 	if asDrawn != "" {
-		out.Faults = append(out.Faults, &Fault{Name: "the machine is as drawn, with " + asDrawn, Do: "What to do stands under Fix first.", model: []Model{modelOf(p, out.Points)}})
+		out.Drawn, out.Known, out.Changed = modelOf(p, out.Points), asDrawn, changes(s.File, edits)
+		out.Faults = append(out.Faults, &Fault{Name: "the machine is as drawn, with " + asDrawn, Do: "What to do stands under Fix first.", model: []Model{out.Drawn}})
 	}
 	opt.Cache.put(key, out)
 	return out, nil
 }
 
-// cured is the circuit with its known faults cured, and what they are; the circuit as it is where none is known.
-func cured(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt Options) (*look.Plant, string, error) {
+// cured is the circuit with its known faults cured by settings and repairs, what they are, and the edits; the circuit as it is
+// where none is known. A part of another size is not in it: it is not the machine that is read.
+func cured(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt Options) (*look.Plant, string, fixfirst.Cure, error) {
 	as := look.New(s, run, opt.System)
 	for _, l := range opt.Ladders {
-		if l.Circuit != run.Circuit.Name || len(l.Faultless()) == 0 {
+		edits, names := l.Restored()
+		if l.Circuit != run.Circuit.Name || len(edits) == 0 {
 			continue
 		}
-		g, err := fixfirst.Apply(s.File, l.Faultless())
+		g, err := fixfirst.Apply(s.File, edits)
 		if err != nil {
 			continue // two cures of one thing: the circuit as it is
 		}
 		sol, other, err := fixfirst.SolveOne(ctx, g, run.Circuit.Name)
 		if err != nil {
-			return nil, "", err
+			return nil, "", nil, err
 		}
 		if other != nil {
-			return look.New(sol, other, opt.System), l.Names(), nil
+			return look.New(sol, other, opt.System), strings.Join(names, "; "), edits, nil
 		}
 	}
-	return as, "", nil
+	return as, "", nil, nil
 }
 
 // All writes a plan for every circuit as found of a solution.

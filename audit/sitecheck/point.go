@@ -84,7 +84,7 @@ func points(p *look.Plant) []Point {
 			continue
 		}
 		r := look.Value(b, "rated_power")
-		out = append(out, Point{Name: b.ID + ".power", Block: b.ID, What: "electric power drawn", Place: "feed of " + b.ID + ", three clamps and three voltages", Dim: units.Power, feed: true, sign: 1,
+		out = append(out, Point{Name: b.ID + ".power", Block: b.ID, What: "electric power drawn", Place: "feed of " + b.ID + " alone, without fan and pumps of the cooling; three clamps and three voltages", Dim: units.Power, feed: true, sign: 1,
 			Gauge: "power logger, to " + shown(p, niceUp(1.25*r), units.Power) + ", 1 to 3 %", Rate: rate, Caution: powerWork})
 	}
 	for _, b := range p.Blocks("pump", "charge_pump") {

@@ -6,11 +6,12 @@ import (
 	"strings"
 
 	"barlitre/audit"
+	"barlitre/audit/fixfirst"
 	"barlitre/machines/units"
 )
 
 // Intro says how the plan is used.
-const Intro = "Bring the machine into the four states, one after the other, oil warm, and read every point in each. Values are means by state that a steady balance of the drawing gives; where a range stands, the needle moves in it. A tenth up or down, or a few bar, means nothing."
+const Intro = "Bring the machine into the four states, one after the other, oil warm, and read every point in each. Values are means by state that a steady balance gives; where a range stands, the needle moves in it. A tenth up or down, or a few bar, means nothing."
 
 // Cautions hold for the whole check.
 const Cautions = "Only with the owner's permit and by the rules of the place. Guards stay closed, nobody reaches in, a person who knows the machine runs it. Before a fitting is opened: motor off and locked, loads lowered or propped, accumulators discharged, zero seen on a gauge. Relief and load-holding valves are not touched. An oil jet goes through gloves and skin: oil under the skin is for a surgeon at once."
@@ -22,6 +23,58 @@ func StateText() string {
 		parts = append(parts, s.Name+" ("+s.Text+")")
 	}
 	return strings.Join(parts, ", ") + "."
+}
+
+// Basis says of which machine the good values are.
+func (p *Plan) Basis() string {
+	if p.Drawn == nil {
+		return "Good values are those of the machine as drawn: no fault is known of it."
+	}
+	return "Good values are not those of the machine as drawn, but of the machine with these known faults cured: " + p.Known +
+		". Changed for that, on paper alone: " + strings.Join(p.Changed, "; ") + ". Where it differs, the value as drawn stands beside it: that is what the machine shows while the faults last."
+}
+
+// changes writes edits with the value before.
+func changes(f *audit.File, edits fixfirst.Cure) []string {
+	var out []string
+	for _, e := range edits {
+		text := e.Target + " " + e.Value
+		name, param, inCircuit := strings.Cut(e.Target, "/")
+		id, key, ok := strings.Cut(param, ".")
+		if c := f.Circuit(name); inCircuit && ok && c != nil && c.Block(id) != nil {
+			text = param + " " + e.Value
+			if v, given := c.Block(id).Values[key]; given {
+				text += " in place of " + units.FileText(v.SI, v.Unit)
+			}
+		}
+		out = append(out, text)
+	}
+	return out
+}
+
+// AsDrawn writes what the machine as drawn shows at a point, "" where that is as good.
+func (p *Plan) AsDrawn(pt Point, state string) string {
+	if p.Drawn == nil {
+		return ""
+	}
+	if text := p.shown(pt, p.Drawn[at(state, pt.Name)]); text != p.Shown(pt, state) {
+		return text
+	}
+	return ""
+}
+
+// RowAsDrawn is what the machine as drawn shows at a point in each state, "" where it is as good; nil where it is in all.
+func (p *Plan) RowAsDrawn(pt Point) []string {
+	var row []string
+	differs := false
+	for _, s := range States() {
+		text := p.AsDrawn(pt, s.Name)
+		row, differs = append(row, text), differs || text != ""
+	}
+	if !differs {
+		return nil
+	}
+	return row
 }
 
 // Shown writes what the model says of a point in a state.

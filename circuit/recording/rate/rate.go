@@ -92,13 +92,13 @@ func (c *Check) judge(means, blind bool, cycle float64) {
 	case math.IsNaN(c.Error):
 		c.say(false, "nothing moves under a load: there is no energy to judge the rate by")
 	case cycle > 0 && cycle < leastPerCycle*c.Interval:
-		c.say(true, "logged every %.3g s: fewer than %d rows a cycle are too few to tell the error of their energy (thinned or joined, they differ by %.2g %%); log faster", c.Interval, leastPerCycle, 100*c.Error)
+		c.say(true, "logged every %.3g s: fewer than %d rows a cycle are too few to tell the error of their energy (thinned or joined, they differ by %s); log faster", c.Interval, leastPerCycle, percent(c.Error))
 	case c.Error <= Fair:
-		c.say(false, "logged every %.3g s: %s an error of about %.2g %% is left; fit for energy", c.Interval, how, 100*c.Error)
+		c.say(false, "logged every %.3g s: %s an error of about %s is left; fit for energy", c.Interval, how, percent(c.Error))
 	case c.Error <= Poor:
-		c.say(true, "logged every %.3g s: %s an error of about %.2g %% is left; log faster, or state it", c.Interval, how, 100*c.Error)
+		c.say(true, "logged every %.3g s: %s an error of about %s is left; log faster, or state it", c.Interval, how, percent(c.Error))
 	default:
-		c.say(true, "logged every %.3g s: %s an error of about %.2g %% is left; not fit for energy, log faster", c.Interval, how, 100*c.Error)
+		c.say(true, "logged every %.3g s: %s an error of about %s is left; not fit for energy, log faster", c.Interval, how, percent(c.Error))
 	}
 }
 
@@ -275,4 +275,12 @@ func median(t []float64) float64 {
 	}
 	sort.Float64s(d)
 	return d[len(d)/2]
+}
+
+// percent writes a share in plain digits.
+func percent(share float64) string {
+	if x := 100 * share; x >= 10 {
+		return fmt.Sprintf("%.0f %%", x)
+	}
+	return fmt.Sprintf("%.2g %%", 100*share)
 }
