@@ -6,18 +6,12 @@ import (
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
+	"barlitre/circuit/logged"
 	"barlitre/circuit/recording/logger"
-	"barlitre/circuit/recording/rate"
 )
 
-// rateRows bounds the rows by which a rate is judged; of a longer recording it is those in its middle.
-const rateRows = 400_000
-
 // AxisRate is what the rate of a recording means for the energy of an axis.
-type AxisRate struct {
-	Axis string
-	rate.Check
-}
+type AxisRate = logged.Rated
 
 // rateOf tells checks apart: the columns they are of, and what else they hang on.
 type rateOf struct {
@@ -41,14 +35,10 @@ func (t *recorded) rated(d *duty.Duty, axes []duty.Axis, means bool) (out []Axis
 		of := rateOf{&load.Values[0], &v.Values[0], cycle, means}
 		c, done := t.rates[of]
 		if !done {
-			from, to := 0, len(d.Time)
-			if to > rateRows {
-				from, to = to/2-rateRows/2, to/2+rateRows/2
-			}
-			c = rate.Of(d.Time[from:to], load.Values[from:to], v.Values[from:to], means, cycle)
+			c = logged.RateOf(d, load.Values, v.Values, means)
 			t.rates[of] = c
 		}
-		out = append(out, AxisRate{a.Name, c})
+		out = append(out, AxisRate{Axis: a.Name, Check: c})
 	}
 	return out
 }

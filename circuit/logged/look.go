@@ -18,17 +18,27 @@ type Rated struct {
 // rateRows bounds the rows by which a rate is judged: those in the middle of a longer recording.
 const rateRows = 400_000
 
-// Rates checks each axis that has motion and load. means says that rows are means over
-// their intervals; cycle [s] is 0 where none is known.
-func Rates(d *duty.Duty, means bool, cycle float64) (out []Rated) {
+// Rates checks each axis of a duty that has motion and load. means says that rows are means
+// over their intervals.
+func Rates(d *duty.Duty, means bool) (out []Rated) {
+	for _, w := range Works(d) {
+		out = append(out, Rated{w.Axis, RateOf(d, w.Load, w.Speed, means)})
+	}
+	return out
+}
+
+// RateOf checks one axis by its load and speed at the rows of a duty, which is one cycle where
+// it repeats.
+func RateOf(d *duty.Duty, load, speed []float64, means bool) rate.Check {
+	cycle := 0.0
+	if d.Repeats {
+		cycle = d.Cycle()
+	}
 	from, to := 0, len(d.Time)
 	if to > rateRows {
 		from, to = to/2-rateRows/2, to/2+rateRows/2
 	}
-	for _, w := range Works(d) {
-		out = append(out, Rated{w.Axis, rate.Of(d.Time[from:to], w.Load[from:to], w.Speed[from:to], means, cycle)})
-	}
-	return out
+	return rate.Of(d.Time[from:to], load[from:to], speed[from:to], means, cycle)
 }
 
 // Cycles finds cycles and states: by the speeds of the axes, their loads, and the power that
