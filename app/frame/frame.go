@@ -39,6 +39,7 @@ type Frame struct {
 	laid     *audit.Report
 	laidOf   *audit.Solution
 	laidFor  units.System
+	pickedIn string          // the folder that a file to read was last taken from
 	solution *audit.Solution // of all circuits
 	pair     *audit.Solution // of the two shown
 	pairOf   pairOf
@@ -137,6 +138,7 @@ func (f *Frame) changed(w station.What) {
 		f.title()
 	}
 	if w.Has(station.Advice) {
+		f.verdict.Refresh()
 		f.rail.refresh()
 	}
 	if w.Has(station.Model | station.Settings | station.Selection) {
