@@ -169,7 +169,7 @@ func rankOf(k *circuit.Kind, words []string) int {
 
 // common lists the kinds that most circuits have, the commonest of like words first (common
 // practice, no source).
-var common = []string{"tank", "pump", "electric_motor", "cylinder", "motor", "valve", "relief", "check", "filter", "cooler", "line"}
+var common = []string{"tank", "pump", "cylinder", "motor", "electric_motor", "valve", "relief", "check", "filter", "cooler", "line"}
 
 // commonness is the place of a kind in common; the others come after.
 func commonness(k *circuit.Kind) int {
