@@ -278,6 +278,34 @@ func (r *reader) shiftsTwice() {
 	}
 }
 
+// fewestWeeks is the number of weeks a year below which hours of the week and of the year are
+// taken not to be of one machine (our choice).
+const fewestWeeks = 40
+
+// weekAgainstYear warns where the hours of the week in the section heat and those of the duties
+// in the year cannot both be right.
+func (r *reader) weekAgainstYear() {
+	h, year := r.file.Heat.Values, 0.0
+	daily, given := h["shift_hours"]
+	for _, d := range r.file.Duties {
+		year += d.Hours
+	}
+	if !given || r.file.Calendar != nil || year <= 0 {
+		return
+	}
+	days := 5.0 // as HeatKeys has it
+	if v, ok := h["shift_days"]; ok {
+		days = v.SI
+	}
+	week := daily.SI * days
+	if weeks := year / week; weeks >= fewestWeeks && weeks <= calendar.MostWeeks {
+		return
+	}
+	hours := func(t float64) string { return units.Number(t/units.Hour, 4) + " h" }
+	r.says(scope{where: "heat"}, circuit.Warns, child(r.file.root, "heat"), fmt.Sprintf("%s a week (shift_hours, shift_days) make %s in %s weeks, but the duties last %s a year; mend one, or write a shift calendar, which gives both",
+		hours(week), hours(week*calendar.MostWeeks), units.Number(calendar.MostWeeks, 3), hours(year)))
+}
+
 // heatShiftKeys are the keys of a section heat in whose place a calendar stands.
 var heatShiftKeys = []string{"shift_start", "shift_hours", "shift_days"}
 

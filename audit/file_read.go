@@ -36,6 +36,7 @@ func (r *reader) top(root *yaml.Node) bool {
 	r.duties(f["duties"].value, root)
 	r.circuits(f["circuits"].value, root)
 	r.calendar(f["calendar"].value)
+	r.weekAgainstYear()
 	r.readings(f["site_check"].value)
 	return true
 }

@@ -22,17 +22,13 @@ func (r *reader) rate(s scope, d *duty.Duty, f map[string]entry, i int) {
 			means = means || c.Kind == logger.Mean
 		}
 	}
-	cycle := 0.0
-	if d.Repeats {
-		cycle = d.Cycle()
-	}
-	key := fmt.Sprint(cycle, means, r.file.Axes)
+	key := fmt.Sprint(d.Repeats, means, r.file.Axes)
 	for _, k := range []string{"columns", "derived", "part"} { // what else tells which rows are which track
 		if e, ok := f[k]; ok {
 			key += "\x00" + k + flowText(e.value)
 		}
 	}
-	r.file.Rates[i] = r.from.rated(key, func() []logged.Rated { return logged.Rates(d, means, cycle) })
+	r.file.Rates[i] = r.from.rated(key, func() []logged.Rated { return logged.Rates(d, means) })
 	for _, a := range r.file.Rates[i] {
 		if a.Warns {
 			r.told(s, circuit.Warns, at.value, "axis "+a.Axis+": "+strings.Join(a.Remarks, "; "))

@@ -19,7 +19,7 @@ var wrongCircuits = map[string]struct{ block, text string }{
 	"motion_load_and_command":     {"C1", "give exactly two of them"},
 	"no_actuator":                 {"V1", "moves axis ram, which V1 follows; set axis: ram on a cylinder or motor"},
 	"no_drive":                    {"P1", "port shaft (drive shaft) is not connected"},
-	"nothing_follows":             {"C1", "set follows: ram on the valve, pump or motor that controls it"},
+	"nothing_follows":             {"V1", "V1 has to follow axis ram"},
 	"open_return":                 {"F1", "port B (clean side) is not connected"},
 	"port_in_two_lines":           {"V1", "write them as one line, or put a junction between"},
 	"relief_without_setting":      {"RV1", "give its setting: set (at set_flow) or crack"},

@@ -3,6 +3,7 @@ package circuit
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -26,13 +27,18 @@ func Check(c *Circuit, axes []duty.Axis, duties []*duty.Duty) []Finding {
 	k := &checker{c: c, axes: axes, duties: duties}
 	k.blocks()
 	k.lines()
-	if !AnyStops(k.found) { // the rest needs a drawing that can be followed
+	whole := !AnyStops(k.found)
+	if k.followed() {
 		k.nets, k.of = netsOf(c)
 		k.ports()
+	}
+	if whole {
 		k.joints()
 		k.shafts()
 		k.islands()
-		k.rest()
+	}
+	k.rest()
+	if whole { // the rest needs all values
 		for _, d := range duties {
 			k.dutyOf(d)
 		}
@@ -42,6 +48,11 @@ func Check(c *Circuit, axes []duty.Axis, duties []*duty.Duty) []Finding {
 	}
 	sort.SliceStable(k.found, func(i, j int) bool { return rank(k.found[i].Level) < rank(k.found[j].Level) })
 	return k.found
+}
+
+// followed reports whether the drawing can be followed: what stops so far is of values alone.
+func (k *checker) followed() bool {
+	return !slices.ContainsFunc(k.found, func(f Finding) bool { return f.Level == Stops && (f.Parameter == "" || f.Parameter == "kind") })
 }
 
 func rank(l Level) int { return strings.Index("stops warns caution note", string(l)) }

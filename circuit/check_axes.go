@@ -80,10 +80,10 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 		k.say(Stops, follow[1], "follows", "%s all follow axis %s; only one control can answer for its motion", join(ids(follow), "and"), a.Name)
 	}
 	if len(follow) == 0 && given != duty.None && given != duty.LoadCommand {
-		bad(movers, "nothing in circuit %q follows axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
+		k.nothingFollows(d, a, act, "its motion")
 	}
 	if len(follow) == 0 && given == duty.LoadCommand && len(direct) == 0 {
-		bad(movers, "nothing in circuit %q takes the command of axis %s; set follows: %s on the valve, pump or motor that controls it", k.c.Name, a.Name, a.Name)
+		k.nothingFollows(d, a, act, "its command")
 	}
 	if len(follow) == 1 {
 		k.holding(act, follow[0], direct)
@@ -94,6 +94,33 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 			k.canMove(b, d, a)
 		}
 	}
+}
+
+// nothingFollows says of an axis that no control answers for what the duty gives of it, and
+// names the control where only one can.
+func (k *checker) nothingFollows(d *duty.Duty, a duty.Axis, act *Block, what string) {
+	var free []*Block
+	for _, valves := range []bool{true, false} { // a valve comes first: the pump that feeds it does not follow the axis too
+		for _, b := range sorted(k.c.Blocks) {
+			if KindNamed(b.Kind).Param("follows") != nil && isValve(b) == valves && follows(b) == "" && b.Word("directs") == "" {
+				free = append(free, b)
+			}
+		}
+		if len(free) > 0 {
+			break
+		}
+	}
+	f := Finding{Level: Stops, Circuit: k.c.Name, Duty: d.Name, Block: act.ID, Line: act.Line, Cause: NoFollower, Axis: a.Name}
+	switch len(free) {
+	case 0:
+		f.Text = fmt.Sprintf("no control in circuit %q follows axis %s, so nothing gives %s; add the valve, pump or motor that controls it and choose the axis at 'Follows axis' in its values", k.c.Name, a.Name, what)
+	case 1:
+		f.Block, f.Line, f.Parameter = free[0].ID, free[0].Line, "follows"
+		f.Text = fmt.Sprintf("%s has to follow axis %s, for nothing else in circuit %q gives %s: set 'Follows axis' in its values to %s (follows)", free[0].ID, a.Name, k.c.Name, what, a.Name)
+	default:
+		f.Text = fmt.Sprintf("no control in circuit %q follows axis %s, so nothing gives %s: choose the axis at 'Follows axis' (follows) in the values of the one that controls it: %s", k.c.Name, a.Name, what, join(ids(free), "or"))
+	}
+	k.found = append(k.found, f)
 }
 
 // joined checks that several actuators of an axis can move as one: cylinders joined

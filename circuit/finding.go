@@ -27,6 +27,7 @@ type Finding struct {
 	Line      int     `json:"line,omitempty"` // in the file
 	Cause     Cause   `json:"-"`              // what mends it hangs on this
 	Port      PortRef `json:"-"`              // where one is meant
+	Axis      string  `json:"-"`              // where one is meant
 }
 
 // Cause says what a finding is about, for what mends it; "" where there is no one cure.
@@ -48,6 +49,7 @@ const (
 	RestNotSaid   Cause = "rest not said"  // what pumps do while all stands
 	JoinsNothing  Cause = "joins nothing"  // a junction
 	NoLoadSignal  Cause = "no load signal" // a pump that follows a load pressure
+	NoFollower    Cause = "no follower"    // an axis without a control; Block is the only one that can follow it
 	LoadNotHeld   Cause = "load not held"  // by a valve or brake of its own; the choice is the user's
 )
 

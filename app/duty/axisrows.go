@@ -1,8 +1,11 @@
 package duty
 
 import (
+	"slices"
+
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
 	"barlitre/audit"
@@ -14,6 +17,7 @@ type axisRows struct {
 	content    fyne.CanvasObject
 	name, load *widgets.Field
 	rotary     *widgets.Check
+	both       *widgets.TipButton // gives the duty at hand the usual tracks; nil without a duty
 }
 
 func newAxisRows(p *panel, a cycle.Axis) *axisRows {
@@ -28,15 +32,27 @@ func newAxisRows(p *panel, a cycle.Axis) *axisRows {
 		container.NewBorder(nil, nil, r.rotary, remove))
 	if p.s.shown != nil {
 		rows.Add(widgets.Row("  this duty gives", p.trackChecks([]string{axis + ".speed", axis + ".position", axis + ".load", axis + ".command"}), nil))
+		r.both = widgets.Name(widgets.NewTipButton("Add speed and load of "+axis, signs, func() {
+			duty := p.s.shown.Name
+			p.do(doc.Edit("Add speed and load of "+axis, func(f *audit.File) error { return speedAndLoad(f, duty, axis) }))
+		}), "duty.axis."+axis+".both")
+		rows.Add(container.NewHBox(r.both))
+		sign := widget.NewLabel("  " + signs)
+		sign.Wrapping, sign.Importance = fyne.TextWrapWord, widget.LowImportance
+		rows.Add(sign)
 	}
 	r.content = rows
 	return r
 }
 
-func (r *axisRows) fill(a cycle.Axis) {
+func (r *axisRows) fill(s *Station, a cycle.Axis) {
 	r.name.SetValue(a.Name, "")
 	r.load.SetValue(a.Load, "")
 	r.rotary.SetChecked(a.Kind == cycle.Rotary)
+	if r.both != nil {
+		d := s.shown
+		show(r.both, d != nil && s.locked() == "" && !slices.ContainsFunc(d.Tracks, func(t cycle.Track) bool { return t.Of == a.Name }))
+	}
 }
 
 // took shows what an edit changed, or hands its error on.

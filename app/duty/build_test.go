@@ -12,6 +12,7 @@ import (
 
 	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
+	cycle "barlitre/circuit/duty"
 )
 
 const emptyAudit = "format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\naxes: {}\nduties: []\ncircuits: []\n"
@@ -68,8 +69,9 @@ func TestDutyFromNothing(t *testing.T) {
 	fieldTo(t, f, "duty.name", "cycle")
 	fieldTo(t, f, "duty.hours", "3000")
 	fieldTo(t, f, "duty.step", "10")
-	tap(t, "duty.track.ram.speed")
-	tap(t, "duty.track.ram.load")
+	if s.shown.Track("ram", cycle.Speed) == nil || s.shown.Track("ram", cycle.Load) == nil {
+		t.Fatal("a new duty has not speed and load of the axis")
+	}
 	f.Settle(1190, 590)
 	column(t, f, s, "t", "0", "0.1", "2", "2,1", "5", "5.1", "7", "7.1", "9", "9.1", "12")
 	column(t, f, s, "ram.speed", "0", "0.15", "150 mm/s", "0.03", "0.03", "0", "0", "-0.2", "-0.2", "0", "0")

@@ -5,20 +5,45 @@ import (
 
 	"fyne.io/fyne/v2"
 
+	"barlitre/audit"
 	"barlitre/machines/units"
 )
 
 // newLength is how long a new duty lasts: a round number to be typed over.
 const newLength = "10 s"
 
-// newDuty adds a duty and goes to its name.
+// newDuty adds a duty with speed and load of every axis, and goes to its name.
 func (p *panel) newDuty() {
 	name := p.freeName("duty %d", 1)
-	if err := p.s.ctx.Doc().AddDuty(name, newLength); err != nil {
+	if err := p.s.ctx.Doc().Edit("Add duty "+name, func(f *audit.File) error {
+		if err := f.AddDuty(name, newLength); err != nil {
+			return err
+		}
+		for _, a := range f.Axes {
+			if err := speedAndLoad(f, name, a.Name); err != nil {
+				return err
+			}
+		}
+		return nil
+	}); err != nil {
 		p.s.ctx.Fail(err)
 		return
 	}
 	p.open(name)
+	if len(p.s.ctx.Doc().File().Axes) > 0 {
+		p.s.ctx.Say("Added " + name + ", with speed and load of every axis at zero. " + signs)
+	}
+}
+
+// signs says what the signs of the tracks mean.
+const signs = "Speed above zero extends a cylinder or hoists; a load above zero resists that."
+
+// speedAndLoad gives a duty the two tracks that an axis usually needs.
+func speedAndLoad(f *audit.File, duty, axis string) error {
+	if err := f.AddTrack(duty, axis+".speed", ""); err != nil {
+		return err
+	}
+	return f.AddTrack(duty, axis+".load", "")
 }
 
 func (p *panel) duplicate() {

@@ -75,7 +75,7 @@ func (p *panel) fill() {
 	show(p.own, d != nil)
 	show(p.change, d != nil)
 	for i, a := range p.axis {
-		a.fill(f.Axes[i])
+		a.fill(p.s, f.Axes[i])
 	}
 	for track, c := range p.checks {
 		of, what, _ := strings.Cut(track, ".")

@@ -24,6 +24,7 @@ type phases struct {
 	note    *widget.Label
 	preset  *widgets.Select
 	own     *fyne.Container // buttons for a duty that has phases
+	start   *widgets.Button // for one that has not
 	columns []phaseColumn
 	texts   []map[string]string // what stands written, by phase and key
 }
@@ -44,7 +45,7 @@ func newPhases(s *Station) *phases {
 	p.table.Editable = func(row, col int) bool { return s.staged() && row <= len(p.texts) }
 	p.table.EditText = func(row, col int) string { return s.ctx.Local(p.text(row, col)) }
 	p.table.Hint = p.hint
-	p.table.Empty = "This duty has points. Choose a usual duty above to begin one from phases."
+	p.table.Empty = "This duty has points. Begin a new duty from phases with the button above, or with a usual one."
 	var names []string
 	for _, x := range presets {
 		names = append(names, x.name)
@@ -55,7 +56,8 @@ func newPhases(s *Station) *phases {
 		widgets.Name(widgets.NewButton("Insert phase", p.insert), "duty.phase.insert"),
 		widgets.Name(widgets.NewButton("Delete phase", p.remove), "duty.phase.delete"),
 		widgets.Name(widgets.NewButton("Turn into points", p.convert), "duty.phase.convert"))
-	p.beside = container.NewHBox(p.own, p.preset)
+	p.start = widgets.Name(widgets.NewButton("New duty from phases", p.startTable), "duty.phase.start")
+	p.beside = container.NewHBox(p.own, p.start, p.preset)
 	p.body = container.NewBorder(nil, p.note, nil, nil, p.table)
 	return p
 }
@@ -69,6 +71,7 @@ func (s *Station) staged() bool {
 
 func (p *phases) fill() {
 	show(p.own, p.s.staged())
+	show(p.start, !p.s.staged())
 	p.columns, p.texts = nil, nil
 	if !p.s.staged() {
 		p.table.SetData(nil, 0, nil)
@@ -181,6 +184,29 @@ func (p *phases) remove() {
 func (p *phases) convert() {
 	p.s.panel.do(p.s.ctx.Doc().StagesToPoints(p.s.shown.Name))
 	p.s.pages.open(0)
+}
+
+// startTable adds a duty with one phase in which every axis stands.
+func (p *phases) startTable() {
+	name, file := p.s.panel.freeName("duty %d", 1), p.s.ctx.Doc().File()
+	if len(file.Axes) == 0 {
+		p.s.ctx.Fail(errors.New("a duty from phases needs an axis; add one on the right first"))
+		return
+	}
+	first := []string{"name", "phase 1", "lasts", newLength}
+	for _, a := range file.Axes {
+		zero := "0 kN"
+		if a.Kind == cycle.Rotary {
+			zero = "0 N m"
+		}
+		first = append(first, a.Name+".load", zero)
+	}
+	if err := p.s.ctx.Doc().AddStagedDuty(name, [][]string{first}); err != nil {
+		p.s.ctx.Fail(err)
+		return
+	}
+	p.s.panel.open(name)
+	p.s.ctx.Say("Added " + name + " with one phase: type how long it lasts, stroke or speed and load of each axis; the empty row adds a phase.")
 }
 
 // begin adds a duty from a preset, for the first axis of its kind.

@@ -84,6 +84,7 @@ func (f *Frame) openEmpty() {
 		f.Fail(err)
 		return
 	}
+	f.show(0)
 	f.Say("An empty circuit. Press / on the sheet to add a first block, then drag from port to port to connect.")
 }
 
@@ -122,6 +123,7 @@ func (f *Frame) PickFile(title, verb string, endings []string, then func(path st
 		} else if r != nil {
 			path := r.URI().Path()
 			r.Close()
+			f.pickedIn = filepath.Dir(path)
 			then(path)
 		}
 	}, f.win)
@@ -130,7 +132,7 @@ func (f *Frame) PickFile(title, verb string, endings []string, then func(path st
 		both = append(both, e, strings.ToUpper(e))
 	}
 	d.SetFilter(storage.NewExtensionFileFilter(both))
-	f.showFiles(d, title, verb)
+	f.showFilesIn(d, f.pickFolder(), title, verb)
 }
 
 // openFileVariable names the file that scripts pick, without a dialog.
@@ -164,15 +166,36 @@ func (f *Frame) dropped(path string) {
 	f.leave(func() { f.open(path) })
 }
 
+// auditFolder is where the open file is; for one without a name the folder that was last
+// used, else that of the user.
+func (f *Frame) auditFolder() string {
+	if p := f.doc.Path(); p != "" {
+		return filepath.Dir(p)
+	}
+	if f.pickedIn != "" {
+		return f.pickedIn
+	}
+	dir, _ := os.UserHomeDir()
+	return dir
+}
+
+// pickFolder is where a file to read is looked for: where the last one was, else beside the audit.
+func (f *Frame) pickFolder() string {
+	if f.pickedIn != "" {
+		return f.pickedIn
+	}
+	return f.auditFolder()
+}
+
 // showFiles opens a file dialog where the open file is.
 func (f *Frame) showFiles(d *dialog.FileDialog, title, verb string) {
+	f.showFilesIn(d, f.auditFolder(), title, verb)
+}
+
+func (f *Frame) showFilesIn(d *dialog.FileDialog, dir, title, verb string) {
 	d.SetTitleText(title)
 	d.SetConfirmText(verb)
 	d.SetView(dialog.ListView)
-	dir := filepath.Dir(f.doc.Path())
-	if f.doc.Path() == "" {
-		dir, _ = os.UserHomeDir()
-	}
 	if l, err := storage.ListerForURI(storage.NewFileURI(dir)); err == nil {
 		d.SetLocation(l)
 	}

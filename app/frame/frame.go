@@ -41,6 +41,7 @@ type Frame struct {
 	laidFor  units.System
 	solution *audit.Solution // of all circuits, as last told
 	solved   int             // its revision
+	pickedIn string          // the folder that a file to read was last taken from
 	pair     *audit.Solution // of the two shown
 	pairOf   pairOf
 
@@ -138,6 +139,7 @@ func (f *Frame) changed(w station.What) {
 		f.title()
 	}
 	if w.Has(station.Advice) {
+		f.verdict.Refresh()
 		f.rail.refresh()
 	}
 	if w.Has(station.Model | station.Settings | station.Selection) {

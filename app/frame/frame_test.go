@@ -116,7 +116,7 @@ func TestVerdictFollowsAnEdit(t *testing.T) {
 	b.Open("")
 	b.solved()
 	before := b.verdictText()
-	for _, want := range []string{"energy=", "saving=", "heat=", "cooler=", "payback=", "state=up to date"} {
+	for _, want := range []string{"energy=", "saving=", "heat=", "cooler=", "payback=", "state=solved"} {
 		if !strings.Contains(before, want) {
 			t.Errorf("no %q in the verdict line:\n%s", want, before)
 		}

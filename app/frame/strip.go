@@ -76,7 +76,10 @@ func (s *strip) toggle() {
 func (s *strip) reload() {
 	file := s.f.doc.File()
 	if file == nil || s.f.duty >= len(file.Duties) {
-		s.plot = figures.Plot{}
+		s.plot, s.own = figures.Plot{}, true
+		s.picker.SetOptions(nil)
+		s.picker.ClearSelected()
+		s.own = false
 		s.figure.Refresh()
 		return
 	}

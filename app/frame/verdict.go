@@ -10,6 +10,7 @@ import (
 	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/audit/pen"
+	"barlitre/circuit"
 	"barlitre/machines/units"
 )
 
@@ -101,7 +102,10 @@ func (f *Frame) aloneFields(r *audit.Report) []verdictField {
 // stateText says whether the figures belong to what is on the sheet.
 func (f *Frame) stateText() (text string, good bool) {
 	running, done, total := f.doc.Solving()
+	file := f.doc.File()
 	switch {
+	case file != nil && len(file.Circuits) == 0:
+		return "nothing drawn yet", false
 	case running && total > 0 && done > 0:
 		return fmt.Sprintf("solving %d %%", 100*done/total), false
 	case running, f.doc.Current() && f.solved != f.doc.Revision(): // solved, but not on the sheets yet
@@ -109,12 +113,15 @@ func (f *Frame) stateText() (text string, good bool) {
 	case !f.doc.Current() && f.solution != nil:
 		return "out of date", false
 	case f.solution == nil:
+		if n := f.count(circuit.Stops); n > 0 {
+			return "cannot be solved: " + plural(n, "fault", "faults"), false
+		}
 		return "not solved", false
 	}
 	for _, c := range f.solution.Circuits {
 		for _, d := range c.Duties {
 			if d.Balance == nil {
-				return c.Circuit.Name + " cannot be solved", false
+				return c.Circuit.Name + " cannot be solved: " + plural(max(1, f.count(circuit.Stops)), "fault", "faults"), false
 			}
 			if d.Certificate.Unbalanced > 0 {
 				return "steps left unbalanced", false
@@ -127,7 +134,24 @@ func (f *Frame) stateText() (text string, good bool) {
 	case f.solution.Pending:
 		return "oil temperature cancelled", false
 	}
-	return "up to date", true
+	if n := f.count(circuit.Stops); n > 0 {
+		return "cannot be solved: " + plural(n, "fault", "faults"), false
+	}
+	if n := f.count(circuit.Warns) + len(f.doc.Faults(f.settings.system)); n > 0 {
+		return "solved, " + plural(n, "finding", "findings") + " to mend", true
+	}
+	return "solved", true
+}
+
+// count is how many findings of a level there are.
+func (f *Frame) count(l circuit.Level) int {
+	n := 0
+	for _, g := range f.doc.Findings() {
+		if g.Level == l {
+			n++
+		}
+	}
+	return n
 }
 
 func (f *Frame) drawVerdict(p pen.Pen, w, h float64) []widgets.Part {

@@ -25,7 +25,12 @@ func (e *editor) add(kind string, at [2]float64) {
 		e.s.refused(err)
 		return
 	}
+	first, zoom, x, y := e.circuit < 0, e.zoom, e.x, e.y
 	e.take([]string{id})
+	if first { // it stays at the pointer
+		e.zoom, e.x, e.y = zoom, x, y
+		e.redraw()
+	}
 	e.s.ctx.Say("Added " + id + ", " + lower(circuit.KindNamed(kind).Title) + ". Drag from a port to a port to connect; its values stand on the right; F2 renames it.")
 }
 

@@ -108,6 +108,7 @@ func (e *editor) show(at int, c *circuit.Circuit) {
 	other := c == nil || e.name != c.Name
 	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.ports, e.name = at, c, nil, nil, nil, nil, nil, nil, ""
 	if c == nil {
+		e.zoom, e.x, e.y, e.fitted = fitMost*float64(widgets.Scale()), 0, 0, true // where a first block goes
 		return
 	}
 	e.name, e.laying.ready = c.Name, nil

@@ -80,7 +80,12 @@ func (f *findings) reload() {
 	if solving, _, _ := doc.Solving(); !solving || len(f.list) == 0 {
 		list, faults := f.withFaults(doc.Findings())
 		slices.SortStableFunc(list, func(a, b circuit.Finding) int { return slices.Index(ranks, a.Level) - slices.Index(ranks, b.Level) })
+		newStop := slices.ContainsFunc(list, func(g circuit.Finding) bool { return g.Level == circuit.Stops && !slices.Contains(f.list, g) })
 		f.list, f.cures, f.faults = list, nil, nil
+		if newStop {
+			f.at = 0
+			f.scroll.ScrollToTop()
+		}
 		for _, g := range list {
 			f.cures = append(f.cures, doc.Cure(g))
 			f.faults = append(f.faults, slices.Contains(faults, g))

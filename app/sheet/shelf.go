@@ -125,7 +125,13 @@ func (h *shelf) filter() {
 			rank[k] = rankOf(k, words)
 			return rank[k] == noMatch
 		})
-		sort.SliceStable(h.kinds, func(i, j int) bool { return rank[h.kinds[i]] < rank[h.kinds[j]] })
+		sort.SliceStable(h.kinds, func(i, j int) bool {
+			a, b := h.kinds[i], h.kinds[j]
+			if rank[a] != rank[b] {
+				return rank[a] < rank[b]
+			}
+			return commonness(a) < commonness(b)
+		})
 	} else {
 		groups := groupOrder()
 		sort.SliceStable(h.kinds, func(i, j int) bool { return groups[h.kinds[i].Group] < groups[h.kinds[j].Group] })
@@ -137,25 +143,40 @@ func (h *shelf) filter() {
 }
 
 // noMatch is the rank of a kind that does not have what was typed.
-const noMatch = 3
+const noMatch = 4
 
-// rankOf tells how well a kind goes with words: 0 they begin its title, 1 they stand in
-// title or name, 2 in its group or text.
+// rankOf tells how well a kind goes with words: 0 its title begins with a whole one, 1 with
+// a part of one, 2 they stand in title or name, 3 in its group or text.
 func rankOf(k *circuit.Kind, words []string) int {
 	rank := 0
 	title := strings.ToLower(k.Title)
+	first, _, _ := strings.Cut(strings.ReplaceAll(title, ",", " "), " ") // "cylinder-switched" is one word
 	for _, w := range words {
 		switch {
+		case first == strings.TrimSuffix(w, ","):
 		case strings.HasPrefix(title, w):
-		case strings.Contains(title+" "+k.Name, w):
 			rank = max(rank, 1)
-		case strings.Contains(strings.ToLower(k.Group+" "+k.Text), w):
+		case strings.Contains(title+" "+k.Name, w):
 			rank = max(rank, 2)
+		case strings.Contains(strings.ToLower(k.Group+" "+k.Text), w):
+			rank = max(rank, 3)
 		default:
 			return noMatch
 		}
 	}
 	return rank
+}
+
+// common lists the kinds that most circuits have, the commonest of like words first (common
+// practice, no source).
+var common = []string{"tank", "pump", "cylinder", "motor", "electric_motor", "valve", "relief", "check", "filter", "cooler", "line"}
+
+// commonness is the place of a kind in common; the others come after.
+func commonness(k *circuit.Kind) int {
+	if i := slices.Index(common, k.Name); i >= 0 {
+		return i
+	}
+	return len(common)
 }
 
 // groupOrder numbers the groups in the order of the catalog.

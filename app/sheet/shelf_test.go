@@ -103,6 +103,21 @@ func TestShelfFindsEveryKind(t *testing.T) {
 	}
 }
 
+// What a trainee types first finds the common kind, not one that only begins with the word.
+func TestShelfPutsTheCommonKindFirst(t *testing.T) {
+	b := newBench(t, press, window)
+	h := &shelf{e: b.s.editors[0]}
+	h.search, h.list = newKeyed(h.key), widgets.NewFigure(fyne.NewSize(1, 1), h.draw)
+	h.scroll = b.s.panel.scroll
+	for _, c := range []struct{ typed, kind string }{{"cylinder", "cylinder"}, {"cyl", "cylinder"}, {"motor", "motor"},
+		{"valve", "valve"}, {"pump", "pump"}, {"relief", "relief"}, {"check", "check"}, {"electric", "electric_motor"}, {"tank", "tank"}} {
+		h.search.Text = c.typed
+		if h.filter(); len(h.kinds) == 0 || h.kinds[0].Name != c.kind {
+			t.Errorf("%q finds first %q, want %q", c.typed, h.kinds[0].Name, c.kind)
+		}
+	}
+}
+
 func TestFirstBlockOfAnEmptyAudit(t *testing.T) {
 	b := newBench(t, "", window)
 	if err := b.doc.OpenEmpty(); err != nil {

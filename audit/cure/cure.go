@@ -40,6 +40,7 @@ var rules = map[circuit.Cause]func(p *patient) *Cure{
 	circuit.RestNotSaid:   restNotSaid,
 	circuit.JoinsNothing:  joinsNothing,
 	circuit.NoLoadSignal:  noLoadSignal,
+	circuit.NoFollower:    noFollower,
 }
 
 // Of returns the cure of a finding about a file, or nil where there is none. s gives the

@@ -250,3 +250,49 @@ func TestOilWithoutTank(t *testing.T) {
 	})
 	mendOne(t, f, circuit.NoTank)
 }
+
+// TestTanksAreNotJoined: of two tanks that stand alone none is a place for the other's oil.
+func TestTanksAreNotJoined(t *testing.T) {
+	f, _ := audit.Parse([]byte("format: barlitre/1\noil: {grade: ISO VG 46, temperature: 50 C}\naxes: {}\nduties: []\n"+
+		"circuits: [{name: Bench, pump_at_rest: keep, blocks: {T1: {kind: tank}, T2: {kind: tank}}, lines: []}]\n"), nil, "")
+	n := 0
+	for _, g := range f.Check() {
+		if g.Cause != circuit.OpenPort {
+			continue
+		}
+		n++
+		if c := Of(f, nil, g); c == nil || c.Name != "Take "+g.Block+" out" {
+			t.Errorf("%s: cure %+v", g.Text, c)
+		}
+	}
+	if n != 2 {
+		t.Errorf("%d open ports", n)
+	}
+}
+
+// TestTheOnlyControlFollows: where one control can follow the axis, the cure lets it.
+func TestTheOnlyControlFollows(t *testing.T) {
+	text, err := os.ReadFile("../../samples/starters/throttled-constant-flow.yaml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	f, _ := audit.Parse(regexp.MustCompile(`follows: [a-z]+,? ?`).ReplaceAll(text, nil), nil, "")
+	for _, g := range f.Check() {
+		if g.Cause == circuit.NoFollower {
+			c := Of(f, nil, g)
+			if c == nil || c.Mend == nil || g.Parameter != "follows" || !strings.Contains(g.Text, g.Block+" has to follow axis "+g.Axis) {
+				t.Fatalf("%s: cure %+v", g.Text, c)
+			}
+			if err := c.Mend(f); err != nil {
+				t.Fatal(err)
+			}
+			for _, g := range f.Check() {
+				if g.Cause == circuit.NoFollower {
+					t.Error(g.Text)
+				}
+			}
+			return
+		}
+	}
+	t.Errorf("nothing says that no control follows: %v", f.Check())
+}

@@ -34,13 +34,22 @@ func openPort(p *patient) *Cure {
 	return nil
 }
 
-// tankPort joins a tank that stands alone to a port that misses it, or takes it out where
-// none does.
+// tankPort joins a tank that stands alone to a return that misses it, or takes it out where
+// none does and another tank is there.
 func (p *patient) tankPort() *Cure {
+	others := 0
+	for _, b := range p.e.Blocks {
+		if b.Kind == tank && b.ID != p.Block {
+			others++
+		}
+	}
 	for _, to := range p.freePorts() {
-		if p.e.ReturnsAt(to) && to.Block != p.Block {
+		if p.e.ReturnsAt(to) && p.e.Block(to.Block).Kind != tank {
 			return &Cure{Name: fmt.Sprintf("Connect %s to %s", to, p.Port), Mend: p.connect(to.String(), p.Port.String())}
 		}
+	}
+	if others == 0 {
+		return nil
 	}
 	return joinsNothing(p)
 }
@@ -70,7 +79,7 @@ func (p *patient) freePorts() []circuit.PortRef {
 func (p *patient) partner(at circuit.PortRef) (to circuit.PortRef, ok bool) {
 	var fit, named []circuit.PortRef
 	for _, q := range p.freePorts() {
-		if q.Block == at.Block || p.e.ReturnsAt(q) || p.e.TypeOf(q) != p.e.TypeOf(at) || p.e.MayJoin(at, q) != nil {
+		if q.Block == at.Block || p.e.Block(q.Block).Kind == tank || p.e.ReturnsAt(q) || p.e.TypeOf(q) != p.e.TypeOf(at) || p.e.MayJoin(at, q) != nil {
 			continue
 		}
 		fit = append(fit, q)

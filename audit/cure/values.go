@@ -22,7 +22,13 @@ func missingValue(p *patient) *Cure {
 	if q == nil {
 		return nil
 	}
-	if q.Key != "hold" {
+	switch {
+	case q.Type == circuit.AxisRef && len(p.file.Axes) == 1:
+		axis := p.file.Axes[0].Name
+		return p.set(fmt.Sprintf("Set %s of %s: %s", lower(q.Title), p.Block, axis), q.Key, axis)
+	case q.Key != "hold" && q.Type != circuit.Number:
+		return &Cure{Name: "Choose " + lower(q.Title), Field: q.Key}
+	case q.Key != "hold":
 		return &Cure{Name: "Type " + lower(q.Title), Field: q.Key}
 	}
 	for _, word := range q.Choices {
@@ -33,6 +39,19 @@ func missingValue(p *patient) *Cure {
 		}
 	}
 	return &Cure{Name: "Choose what holds it", Field: q.Key}
+}
+
+// noFollower lets the one control that can answer for an axis follow it.
+func noFollower(p *patient) *Cure {
+	if p.b == nil || p.Parameter == "" {
+		return nil
+	}
+	for _, a := range p.file.Axes {
+		if c := p.set(fmt.Sprintf("Let %s follow axis %s", p.Block, a.Name), p.Parameter, a.Name); a.Name == p.Axis {
+			return c
+		}
+	}
+	return nil
 }
 
 // stopsAt reports whether a file has a finding that stops about the block's parameter.

@@ -15,8 +15,12 @@ type blockHeat struct {
 	mean float64   // W
 }
 
-// smallHeat is the share of a circuit's heat below which blocks are shown together.
-const smallHeat = 0.005
+// smallHeat is the share of a circuit's heat below which blocks are shown together, and
+// noHeat that below which all of them are left out.
+const (
+	smallHeat = 0.005
+	noHeat    = 0.001
+)
 
 // HeatLane stacks the heat that a circuit puts into the oil over one cycle by block, in
 // unit u: the blocks with the most heat each by itself, the largest lowest, the others
@@ -48,6 +52,9 @@ func HeatLane(c *audit.CircuitRun, run *audit.DutyRun, most int, u units.Unit, w
 	}
 	if rest := blocks[n:]; len(rest) > 1 {
 		blocks = append(blocks[:n:n], gatheredHeat(rest))
+	}
+	if last := len(blocks) - 1; last > 0 && blocks[last].mean < noHeat*mean {
+		blocks = blocks[:last]
 	}
 	for _, b := range blocks {
 		for i := range b.v {

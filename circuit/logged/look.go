@@ -19,8 +19,12 @@ type Rated struct {
 const rateRows = 400_000
 
 // Rates checks each axis that has motion and load. means says that rows are means over
-// their intervals; cycle [s] is 0 where none is known.
-func Rates(d *duty.Duty, means bool, cycle float64) (out []Rated) {
+// their intervals. A duty that repeats is one cycle.
+func Rates(d *duty.Duty, means bool) (out []Rated) {
+	cycle := 0.0
+	if d.Repeats {
+		cycle = d.Cycle()
+	}
 	if n := len(d.Time); n > rateRows {
 		from, to := n/2-rateRows/2, n/2+rateRows/2
 		middle := duty.Duty{Time: d.Time[from:to], Tracks: slices.Clone(d.Tracks)}

@@ -13,6 +13,7 @@ import (
 	"strings"
 
 	"barlitre/audit"
+	"barlitre/circuit/logged"
 	"barlitre/machines/units"
 )
 
@@ -155,6 +156,9 @@ func (w *watched) Read(b []byte) (int, error) {
 // rowsEnough is from how many rows on a recording's energies are counted at its rows alone.
 const rowsEnough = 1000
 
+// cyclic reports whether a part is one cycle, of which the duty repeats.
+func cyclic(part logged.Part) bool { return !part.Whole() && part.Is != stretchIs }
+
 // finish edits the audit, as one step of undo, and leaves.
 func (p *Page) finish(file, hours string) {
 	t := p.taking()
@@ -166,7 +170,7 @@ func (p *Page) finish(file, hours string) {
 		if hours != "" {
 			t.Keys["hours"] = hours
 		}
-		if !p.part.Whole() && p.part.Is != stretchIs {
+		if cyclic(p.part) {
 			t.Keys["repeats"] = "yes"
 		} else if len(p.out.whole.Time) >= rowsEnough && p.part.Whole() {
 			t.Keys["instants"] = "no" // sums over the rows, as anyone can repeat them

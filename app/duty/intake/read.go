@@ -266,19 +266,17 @@ func workOut(ctx context.Context, base *audit.File, t audit.Taking, part logged.
 	if err := part.Cut(&shown); err != nil {
 		out.none = err.Error()
 	}
+	shown.Repeats = shown.Repeats || cyclic(part)
 	out.shown = &shown
 	out.works = logged.Works(out.shown)
 	if ctx.Err() != nil {
 		return out
 	}
-	period := 0.0
 	if out.found, err = logged.Cycles(out.whole); err != nil {
 		out.none = err.Error()
-	} else {
-		period = out.found.Period
 	}
 	means := slices.ContainsFunc(t.Kept.Recording().Recipe.Channels, func(c logger.Channel) bool { return c.Kind == logger.Mean })
-	out.rates = logged.Rates(out.whole, means, period)
+	out.rates = logged.Rates(out.shown, means) // of the part that the duty is made of
 	return out
 }
 

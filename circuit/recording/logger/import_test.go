@@ -172,6 +172,25 @@ func TestRestAndPeaksWithNoise(t *testing.T) {
 	}
 }
 
+// A head longer than the lines asked for does not hide the first rows, from which the time
+// of the last ones counts.
+func TestPreviewBehindALongHead(t *testing.T) {
+	f, _ := OpenBytes("x.csv", []byte("Press\nSite A\nOperator B\ntime;p [bar]\n10:00:10;1.5\n10:00:11;2.5\n10:00:12;3.5\n10:00:13;4.5\n10:00:14;5.5\n"))
+	p, err := f.Preview(f.Guess(), 3)
+	if err != nil {
+		t.Fatal(err)
+	}
+	rows := 0
+	for _, r := range p.First {
+		if r.Row {
+			rows++
+		}
+	}
+	if last := p.Last[len(p.Last)-1]; rows != 3 || last.Time != "4" {
+		t.Errorf("%d rows at the start, the last line is at %q", rows, last.Time)
+	}
+}
+
 func TestPreviewAndQuestions(t *testing.T) {
 	f, _ := OpenBytes("x.csv", []byte("Press\nt [s];p [kPa]\n1;1.234\n2;2.345\n3;3.456\nend\n"))
 	r := f.Guess()
@@ -350,7 +369,7 @@ func FuzzImport(f *testing.F) {
 			t.Skip()
 		}
 		r := file.Guess()
-		if p, err := file.Preview(r, 5); err == nil && len(p.First) > 5 {
+		if p, err := file.Preview(r, 5); err == nil && len(p.First) > previewLines {
 			t.Fatal("preview too long")
 		}
 		rec, err := file.Import(context.Background(), r, nil)

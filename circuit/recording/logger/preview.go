@@ -22,8 +22,14 @@ type PreviewRow struct {
 	SI    []float64 // by channel of the recipe, NaN where there is no value or it is text
 }
 
-// Preview reads n lines at either end, without the corrections of an import. It goes by
-// what Open saw, so it takes no time.
+// Of the lines at the start a preview shows at least so many rows, within so many lines.
+const (
+	previewRows  = 3
+	previewLines = 60
+)
+
+// Preview reads n lines at either end, at the start more where a long head comes before the
+// rows, without the corrections of an import. It goes by what Open saw, so it takes no time.
 func (f *File) Preview(r Recipe, n int) (*Preview, error) {
 	if err := r.check(); err != nil && r.Time.Form != Spaced {
 		return nil, err
@@ -33,12 +39,16 @@ func (f *File) Preview(r Recipe, n int) (*Preview, error) {
 		return nil, err
 	}
 	p := &Preview{Names: im.names}
-	for l := newLines(bytes.NewReader(text(f.head, r.Encoding))); len(p.First) < n; {
+	rows := 0
+	for l := newLines(bytes.NewReader(text(f.head, r.Encoding))); len(p.First) < n || rows < min(n, previewRows) && l.n < previewLines; {
 		line := l.next()
 		if line == nil {
 			break
 		}
-		p.First = append(p.First, im.preview(l.n, line))
+		row := im.preview(l.n, line)
+		if p.First = append(p.First, row); row.Row {
+			rows++
+		}
 	}
 	var last [][]byte
 	l := newLines(bytes.NewReader(text(f.evenTail(), r.Encoding)))
