@@ -94,7 +94,7 @@ func (b *bench) until(what string, done func() bool) {
 
 func (b *bench) solved() {
 	b.t.Helper()
-	b.until("solved", func() bool { return b.solution != nil && b.doc.Current() && !b.busy() })
+	b.until("solved", func() bool { return b.solution != nil && b.doc.Current() && !b.busy() && !b.solution.Pending })
 }
 
 func (b *bench) busy() bool { running, _, _ := b.doc.Solving(); return running }
@@ -116,7 +116,7 @@ func TestVerdictFollowsAnEdit(t *testing.T) {
 	b.Open("")
 	b.solved()
 	before := b.verdictText()
-	for _, want := range []string{"energy=", "saving=", "heat=", "cooler=", "payback=", "state=solved"} {
+	for _, want := range []string{"energy=", "saving=", "heat=", "cooler=", "payback=", "state=up to date"} {
 		if !strings.Contains(before, want) {
 			t.Errorf("no %q in the verdict line:\n%s", want, before)
 		}

@@ -138,9 +138,9 @@ func (f *Frame) stateText() (text string, good bool) {
 		return "cannot be solved: " + plural(n, "fault", "faults"), false
 	}
 	if n := f.count(circuit.Warns) + len(f.doc.Faults(f.settings.system)); n > 0 {
-		return "solved, " + plural(n, "finding", "findings") + " to mend", true
+		return "up to date, " + plural(n, "finding", "findings") + " to mend", true
 	}
-	return "solved", true
+	return "up to date", true
 }
 
 // count is how many findings of a level there are.

@@ -264,28 +264,59 @@ func (f *form) fill() {
 // fillQuestions asks what the file leaves open.
 func (f *form) fillQuestions() {
 	f.questions.Objects = nil
-	for _, q := range f.p.recipe.Questions {
+	for _, q := range f.p.recipe.Open() {
 		f.questions.Add(say("⚠ "+q.Text, widget.DangerImportance, false))
-		c := f.p.newChoice("intake.question."+q.Field, q.Choices, nil, func(word string) { f.p.answer(q.Field, word) })
-		c.PlaceHolder = "Choose"
-		f.questions.Add(c.Select)
+		f.questions.Add(f.answerTo(q))
 	}
 	f.questions.Refresh()
 }
 
-func (p *Page) answer(field, word string) {
+// answerTo is a list of choices, or a field where an answer is free.
+func (f *form) answerTo(q logger.Question) fyne.CanvasObject {
+	name := "intake.question." + q.Field
+	if len(q.Choices) == 0 {
+		return widgets.Name(widgets.NewField("", func(text string) error { return f.p.answer(q.Field, text) }), name)
+	}
+	c := f.p.newChoice(name, q.Choices, nil, func(word string) {
+		if err := f.p.answer(q.Field, word); err != nil {
+			f.p.ctx.Fail(err)
+		}
+	})
+	c.PlaceHolder = "Choose"
+	return c.Select
+}
+
+// blocking are the questions without whose answer nothing is read. What a signal means can
+// be told later: until then it is read in mA.
+func (p *Page) blocking() []logger.Question {
+	return slices.DeleteFunc(p.recipe.Open(), func(q logger.Question) bool { return strings.HasSuffix(q.Field, logger.ScalingField) })
+}
+
+// unscaled is a recipe by which signals of unknown meaning are read in mA.
+func unscaled(r logger.Recipe) logger.Recipe {
+	r = cloned(r)
+	for _, q := range r.Open() {
+		if strings.HasSuffix(q.Field, logger.ScalingField) {
+			r.Questions = slices.Clone(r.Questions)
+			_ = r.Answer(q.Field, "mA") // always taken of a question that is open
+		}
+	}
+	return r
+}
+
+func (p *Page) answer(field, word string) error {
 	if field == "separator" {
 		p.restructure(func(r *logger.Recipe) { r.Separator, r.Questions = word, nil })
-		return
+		return nil
 	}
 	r := cloned(p.recipe)
 	r.Questions = slices.Clone(r.Questions)
 	if err := r.Answer(field, word); err != nil {
-		p.ctx.Fail(err)
-		return
+		return err
 	}
 	p.recipe = r
 	p.read()
+	return nil
 }
 
 // fillTables shows both ends of the file.

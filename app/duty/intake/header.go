@@ -123,7 +123,7 @@ func (h *header) says() (string, widget.Importance) {
 // ready says what the duty cannot be made for, "" if nothing.
 func (p *Page) ready() string {
 	switch {
-	case len(p.recipe.Questions) > 0:
+	case len(p.blocking()) > 0:
 		return "The file leaves a question open; answer it under File."
 	case p.job.says != "":
 		return p.job.says

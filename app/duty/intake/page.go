@@ -72,7 +72,7 @@ func New(ctx station.Context) *Page {
 		bodies.Add(body)
 	}
 	form := newForm(p)
-	add("File", form.content, form.fill, func() string { return count(len(p.recipe.Questions)) })
+	add("File", form.content, form.fill, func() string { return count(len(p.recipe.Open())) })
 	columns := newColumns(p)
 	add("Columns", columns.content, columns.fill, nil)
 	found := newFindings(p)
@@ -139,7 +139,7 @@ func (p *Page) Open(path string) error {
 	p.recipe = file.Guess()
 	p.head.name.SetValue(p.freeName(path), "")
 	p.at = 0
-	if len(p.recipe.Questions) == 0 {
+	if len(p.blocking()) == 0 {
 		p.at = 3 // what comes of it; the other sides tell how
 	}
 	p.read()

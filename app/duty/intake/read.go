@@ -88,13 +88,13 @@ const tellEvery = 100 * time.Millisecond
 // read reads the recording by the recipe, then works the tracks out.
 func (p *Page) read() {
 	p.kept, p.out = nil, outcome{}
-	if len(p.recipe.Questions) > 0 {
+	if len(p.blocking()) > 0 {
 		p.job.cancel()
 		p.job.failed = ""
 		p.refresh()
 		return
 	}
-	file, recipe := p.file, cloned(p.recipe)
+	file, recipe := p.file, unscaled(p.recipe)
 	p.start("Reading "+file.Name, func(ctx context.Context, share func(float64)) func() {
 		told := time.Now()
 		rec, err := file.Import(ctx, recipe, func(done, total int64) {

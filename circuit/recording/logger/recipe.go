@@ -112,7 +112,7 @@ func (r *Recipe) Channel(column string) *Channel {
 // Open returns the questions that neither an answer nor the recipe itself has settled.
 func (r *Recipe) Open() (out []Question) {
 	for _, q := range r.Questions {
-		column, scaled := strings.CutSuffix(q.Field, scalingField)
+		column, scaled := strings.CutSuffix(q.Field, ScalingField)
 		c := r.Channel(column)
 		switch {
 		case scaled && c != nil && (c.Scaling != nil || c.Leave || c.Text || c.Quantity != units.Current.Name()):
@@ -124,8 +124,8 @@ func (r *Recipe) Open() (out []Question) {
 	return out
 }
 
-// scalingField ends the field of a question on what a signal means.
-const scalingField = ": scaling"
+// ScalingField ends the Field of a question on what a signal means.
+const ScalingField = ": scaling"
 
 // scaled answers what a signal of 4 to 20 mA means: its ends as in "0 to 250 bar", or "mA" to keep it as it is.
 func (r *Recipe) scaled(column, choice string) error {
@@ -152,7 +152,7 @@ func (r *Recipe) Answer(field, choice string) error {
 	if q := r.Questions[i]; len(q.Choices) > 0 && !slices.Contains(q.Choices, choice) {
 		return fmt.Errorf("%s: %q is none of %s", field, choice, strings.Join(q.Choices, ", "))
 	}
-	if column, ok := strings.CutSuffix(field, scalingField); ok {
+	if column, ok := strings.CutSuffix(field, ScalingField); ok {
 		if err := r.scaled(column, choice); err != nil {
 			return err
 		}
