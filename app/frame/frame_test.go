@@ -289,6 +289,7 @@ func TestUpToDateWhenTold(t *testing.T) {
 		t.Errorf("the state says %q before the stations were told", text)
 	}
 	b.drain()
+	b.solved() // the oil temperature too
 	for _, w := range b.pages[0].told {
 		if w.Has(station.Solution) {
 			told++
