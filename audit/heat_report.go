@@ -73,7 +73,7 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 	if k := h.worstCheck(); k != nil {
 		level, more := circuit.Note, ""
 		if k.AboveAlarm {
-			level, more = circuit.Warns, " of "+p.degrees(h.Alarm)
+			level, more = h.alarmLevel(), " of "+p.degrees(h.Alarm)
 		}
 		say(level, "oil at %s, %s: %s%s", degreesOrMore(p, k.Highest), k.Case, k.Text, more)
 	}

@@ -1,6 +1,7 @@
 package audit
 
 import (
+	"barlitre/circuit"
 	"math"
 
 	"barlitre/audit/thermal"
@@ -95,7 +96,7 @@ func (h *HeatStudy) checks() ([]HeatCheck, error) {
 		name  string
 		scale float64
 	}{
-		{"hot day, worst duty all shift", 1}, {"the same, cooler fouled", 1 / h.Fouling},
+		{"hot day, worst duty all shift", 1}, {"hot day, worst duty, cooler fouled", 1 / h.Fouling},
 	} {
 		p := h.With(h.Hottest, h.HotDay)
 		p.Cooler.Scale *= x.scale
@@ -131,6 +132,15 @@ func (h *HeatStudy) worstCheck() *HeatCheck {
 		}
 	}
 	return worst
+}
+
+// alarmLevel tells a machine that comes to the alarm by its own days, the first two cases, from
+// one that does so in a case harder than they are.
+func (h *HeatStudy) alarmLevel() circuit.Level {
+	if h.Checks[0].AboveAlarm || h.Checks[1].AboveAlarm {
+		return circuit.Warns
+	}
+	return circuit.Caution
 }
 
 // faultHours is how long a fault is followed.
