@@ -97,6 +97,11 @@ func vary(t *testing.T, f *audit.File, seed uint64) []string {
 		}
 	}
 	compensated(f, r, put)
+	if f.Calendar != nil { // its hours go to the duties, to be varied there
+		if err := f.RemoveCalendar(); err != nil {
+			t.Fatal(err)
+		}
+	}
 	for _, d := range f.Duties { // idle 10 to 70 % of the powered hours
 		if d.Name[:4] == "wait" {
 			if err := f.SetDuty(d.Name, "hours", fmt.Sprintf("%.0f h", 3000*r.within(0.1, 0.7)/0.5)); err != nil {
