@@ -23,34 +23,32 @@ func (l *layout) plan(p *sitecheck.Plan) {
 	l.lead(side, "Circuit “"+p.Circuit+"”.", sitecheck.Intro, l.body())
 	l.lead(side, "Good.", p.Basis(), small)
 	l.lead(side, "States.", upper(sitecheck.StateText()), small)
-	t := table{cols: []column{{"where, and gauge", false}, {"stopped", true}, {"idling", true}, {"holding", true}, {"working", true}, {"bad looks like", false}, {"caution for this point", false}}}
+	t := table{cols: []column{{"where, and gauge", false}, {"stopped", false}, {"idling", false}, {"holding", false}, {"working", false}, {"bad looks like", false}, {"caution for this point", false}}}
 	for _, pt := range p.Points {
-		cells := []string{pt.What + ", " + pt.Place + "; " + pt.Gauge + "; " + pt.Rate}
-		for _, s := range sitecheck.States() {
-			cells = append(cells, p.Shown(pt, s.Name))
-		}
+		cells := append([]string{pt.What + ", " + pt.Place + "; " + pt.Gauge + "; " + pt.Rate}, stateCells(p, pt)...)
 		t.rows = append(t.rows, row{cells: append(cells, p.Bad(pt), pt.Caution)})
-		if drawn := p.RowAsDrawn(pt); drawn != nil {
-			t.rows = append(t.rows, row{cells: append(append([]string{"as drawn"}, drawn...), "", "")})
-		}
-		t.rows = append(t.rows, blankRow(p, pt))
 	}
 	l.table(t)
 	l.lead(side, "Before you begin.", sitecheck.Cautions, l.body())
 	l.blanks()
 }
 
-// blankRow leaves room for what is read at a point, in the states that the model says something of.
-func blankRow(p *sitecheck.Plan, pt sitecheck.Point) row {
-	cells := []string{"read:"}
-	for _, s := range sitecheck.States() {
-		blank := "________"
-		if p.Shown(pt, s.Name) == "–" {
-			blank = ""
+// stateCells say what is good in each state, what the machine as drawn would show where that is something
+// else, and leave room for what is read where the model says something.
+func stateCells(p *sitecheck.Plan, pt sitecheck.Point) []string {
+	drawn := p.RowAsDrawn(pt)
+	var cells []string
+	for i, s := range sitecheck.States() {
+		text := p.Shown(pt, s.Name)
+		if text != "–" {
+			if drawn != nil && drawn[i] != "" && drawn[i] != text {
+				text += ", drawn " + drawn[i]
+			}
+			text += " ________"
 		}
-		cells = append(cells, blank)
+		cells = append(cells, text)
 	}
-	return row{cells: append(cells, "", "")}
+	return cells
 }
 
 // blanks leaves lines to write on.
