@@ -6,9 +6,11 @@ import (
 	"encoding/csv"
 	"encoding/json"
 	"io"
+	"math"
 	"os"
 	"path/filepath"
 	"regexp"
+	"strconv"
 	"strings"
 	"testing"
 	"time"
@@ -253,9 +255,25 @@ func TestSaveIsOfThePresentAudit(t *testing.T) {
 	if err := result.Write(&want); err != nil {
 		t.Fatal(err)
 	}
-	if !bytes.Equal(data, want.Bytes()) {
-		t.Error("the file is not of the audit as it stands")
+	if a, b := strings.Split(string(data), "\n"), strings.Split(want.String(), "\n"); len(a) != len(b) {
+		t.Errorf("the file has %d lines, the audit as it stands %d", len(a), len(b))
+	} else {
+		for i := range a {
+			if !sameLine(a[i], b[i]) {
+				t.Errorf("line %d: %s, want %s", i+1, a[i], b[i])
+			}
+		}
 	}
+}
+
+// sameLine compares lines of results: to the byte, or as numbers to 1e-9, for the week of the oil is found by going on until
+// it repeats itself, and where that begins hangs on what was solved before.
+func sameLine(a, b string) bool {
+	key, x, _ := strings.Cut(strings.TrimSuffix(a, ","), ": ")
+	other, y, _ := strings.Cut(strings.TrimSuffix(b, ","), ": ")
+	v, err := strconv.ParseFloat(x, 64)
+	w, wrong := strconv.ParseFloat(y, 64)
+	return a == b || key == other && err == nil && wrong == nil && math.Abs(v-w) <= 1e-9*math.Abs(w)
 }
 
 func TestPreview(t *testing.T) {
