@@ -100,7 +100,7 @@ func TestSelectionLeadsToItsFinding(t *testing.T) {
 	list := b.s.findings
 	marked := slices.IndexFunc(list.list, func(g circuit.Finding) bool { return g.Circuit == "As found" && g.Marked() })
 	if marked < 0 {
-		t.Skip("the sample has no marked block")
+		t.Fatal("the sample has no marked block")
 	}
 	list.at = len(list.list) - 1
 	b.click(0, b.middle(0, list.list[marked].Block), 0)

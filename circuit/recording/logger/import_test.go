@@ -366,7 +366,7 @@ func FuzzImport(f *testing.F) {
 	f.Fuzz(func(t *testing.T, data []byte) {
 		file, err := OpenBytes("x.csv", data)
 		if err != nil {
-			t.Skip()
+			return // refused before anything is guessed
 		}
 		r := file.Guess()
 		if p, err := file.Preview(r, 5); err == nil && len(p.First) > previewLines {
