@@ -22,8 +22,8 @@
 // on the entries that the slopes have and that are not zero (plan.go, slopes.go); slopes that
 // stay as they are a problem states once (Slopes.AddSteady). Numbers
 // known in advance stand before the unknowns (Border), so that the problem never asks which
-// is which. Where a plan does not serve, the dense factors of the unknowns off their bounds
-// do; that, and finding plans, is what a change of direction costs. Only plans are
+// is which. Where a plan does not serve, pivots are chosen for that step alone (direct.go,
+// planner.go); that, and finding plans, is what a change of direction costs. Only plans are
 // allocated on the way, and their room is used again when there are too many.
 //
 // Sources: Facchinei and Pang, Finite-Dimensional Variational Inequalities and

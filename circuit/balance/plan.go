@@ -14,7 +14,7 @@ type plan struct {
 	key     []uint64 // which unknowns rest on a bound
 	entries int      // of the slopes it was made for
 	none    []int32  // entries that were zero when it was made, and count on being so
-	sparse  bool     // false: singular when it was made, use the dense factors
+	sparse  bool     // false: singular when it was made
 	bad     int      // times a pivot was too small
 	next    *plan    // another one of the same key
 	fixed   []int32  // the unknowns that rest on a bound

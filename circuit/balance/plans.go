@@ -8,7 +8,6 @@ type plans struct {
 	made  []*plan // that may be used again
 	count int     // of them in use
 	work  []float64
-	maker *planner
 }
 
 // mostPlans bounds the memory of plans.
@@ -22,7 +21,7 @@ func newPlans(n int) plans {
 const mostVariants = 8
 
 // get returns the plan for the present key and slopes.
-func (ps *plans) get(j *Slopes) *plan {
+func (ps *plans) get(j *Slopes, maker *planner) *plan {
 	if p := ps.last; p != nil && p.fits(ps.key, j) {
 		return p
 	}
@@ -39,8 +38,8 @@ func (ps *plans) get(j *Slopes) *plan {
 		}
 		variants++
 	}
-	p := ps.unused(j.n)
-	ps.maker.make(p, j, ps.key, variants < mostVariants)
+	p := ps.unused()
+	maker.make(p, j, ps.key, variants < mostVariants)
 	if variants < mostVariants {
 		p.next = ps.of[h]
 	}
@@ -54,10 +53,7 @@ func (ps *plans) get(j *Slopes) *plan {
 
 // unused returns room for a plan for n unknowns. When there are too many, all are
 // forgotten: those that still serve are soon made again.
-func (ps *plans) unused(n int) *plan {
-	if ps.maker == nil {
-		ps.maker = newPlanner(n)
-	}
+func (ps *plans) unused() *plan {
 	if ps.count == mostPlans {
 		clear(ps.of)
 		ps.count = 0
@@ -98,7 +94,7 @@ func (s *Solver) planned(x []float64, a aim) bool {
 	if a.smooth || a.delta > 0 {
 		return false
 	}
-	p := s.plans.get(s.j)
+	p := s.plans.get(s.j, s.maker)
 	if !p.sparse {
 		return false
 	}

@@ -8,23 +8,17 @@ import "math"
 // it puts into out; the solution and what the next Solve finds stay as they are.
 func (s *Solver) Response(p Problem, x []float64, of []int, out []float64) {
 	s.norm(p, x, aim{}, true)
-	free := s.open(x, aim{})
-	n := len(free)
-	b, moved := s.xt[:n], s.f.out[:n]
-	s.dense(free, b, 0)
-	sound := s.f.factor() >= tinyPivot
+	s.weigh(x, aim{})
+	b, moved := s.xt, s.dx
 	for k, i := range of {
-		at := s.place[i]
-		switch {
-		case at < 0:
-			out[k] = 0
-		case !sound:
-			out[k] = math.Inf(1)
-		default:
-			clear(b)
-			b[at] = 1
-			s.f.solve(b, moved)
-			out[k] = moved[at]
+		if out[k] = 0; s.onBound(i) {
+			continue
+		}
+		s.lay(0)
+		clear(b)
+		b[i] = 1
+		if out[k] = math.Inf(1); s.maker.solve(b, moved) {
+			out[k] = moved[i]
 		}
 	}
 }

@@ -50,6 +50,14 @@ func (j *Slopes) Add(r, c int, v float64) {
 	}
 }
 
+// on returns the slope of row i by its own unknown.
+func (j *Slopes) on(i int) float64 {
+	if k := j.at[i*(j.side+1)+j.zero]; k >= firstEntry {
+		return j.val[k]
+	}
+	return 0
+}
+
 // Stating reports whether AddSteady is to be called in this evaluation.
 func (j *Slopes) Stating() bool { return j.stating }
 

@@ -70,14 +70,13 @@ type Solver struct {
 	Foretell bool
 
 	n               int
-	f               *lu
+	maker           *planner
 	j               *Slopes
 	rows, g         []float64 // g is the end of rows
 	r, dx, xt, best []float64
 	start, anchor   []float64
 	mark            []float64
-	rim, steep      []float64 // of a dense step: weights of bound and G in each row
-	place, free     []int32   // and where an unknown is in it, −1 on a bound; which are in it
+	rim, steep      []float64 // weights of bound and G in each row, of a step without a plan
 	hist            [5]float64
 	now             point
 	plans           plans
@@ -93,11 +92,10 @@ type point struct {
 
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
-	s := &Solver{n: n, f: newLU(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
+	s := &Solver{n: n, maker: newPlanner(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
 	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep} {
 		*p = make([]float64, n)
 	}
-	s.place, s.free = make([]int32, n), make([]int32, 0, n)
 	s.Border(0)
 	for i := 0; i < n; i++ {
 		s.Lo[i], s.Hi[i], s.Weight[i] = math.Inf(-1), math.Inf(1), 1

@@ -3,8 +3,6 @@ package balance
 import (
 	"math"
 	"testing"
-
-	"gonum.org/v1/gonum/mat"
 )
 
 // problem adapts a function; the Jacobian is by central differences, so that
@@ -100,41 +98,6 @@ func kojima(x, g []float64) {
 	g[1] = 2*x[0]*x[0] + x[0] + x[1]*x[1] + 10*x[2] + 2*x[3] - 2
 	g[2] = 3*x[0]*x[0] + x[0]*x[1] + 2*x[1]*x[1] + 2*x[2] + 9*x[3] - 9
 	g[3] = x[0]*x[0] + 3*x[1]*x[1] + 2*x[2] + 3*x[3] - 3
-}
-
-func TestLUAgainstLibrary(t *testing.T) {
-	for n := 1; n <= 24; n++ {
-		f := newLU(n)
-		a := mat.NewDense(n, n, nil)
-		b := make([]float64, n)
-		state := uint64(n)*2654435761 + 1
-		next := func() float64 {
-			state = state*6364136223846793005 + 1442695040888963407
-			return float64(int64(state>>11))/float64(1<<52) - 1
-		}
-		for i := 0; i < n; i++ {
-			b[i] = next()
-			for j := 0; j < n; j++ {
-				v := next() * math.Pow(10, 6*next())
-				a.Set(i, j, v)
-				f.a[i*n+j] = v
-			}
-		}
-		var want mat.VecDense
-		if err := want.SolveVec(a, mat.NewVecDense(n, append([]float64(nil), b...))); err != nil {
-			continue // too ill-conditioned for a comparison
-		}
-		x := make([]float64, n)
-		if f.factor() == 0 {
-			t.Fatalf("n = %d: singular", n)
-		}
-		f.solve(b, x)
-		for i := range x {
-			if d := math.Abs(x[i] - want.AtVec(i)); d > 1e-6*(1e-6+math.Abs(want.AtVec(i))) && d > 1e-9 {
-				t.Errorf("n = %d: x[%d] = %g, gonum %g", n, i, x[i], want.AtVec(i))
-			}
-		}
-	}
 }
 
 // A polynomial of order k is foretold exactly by order k: its differences of order k+1
