@@ -33,6 +33,7 @@ type adviser struct {
 type asked struct {
 	of     *audit.Solution
 	system units.System
+	ctx    context.Context
 	stop   context.CancelFunc
 }
 
@@ -65,10 +66,10 @@ func (d *Document) Advise(system units.System) {
 	}
 	d.stopAdvice()
 	ctx, stop := context.WithCancel(context.Background())
-	now := &asked{d.solution, system, stop}
+	now := &asked{d.solution, system, ctx, stop}
 	a.asked, a.done, a.total, a.err = now, 0, 0, nil
 	d.running.Add(1)
-	go d.advise(ctx, now)
+	go d.advise(now)
 }
 
 // stopAdvice gives up what is being made. mu is held.
@@ -87,12 +88,12 @@ func (d *Document) CancelAdvice() {
 	d.emit(Event{Kind: Advised})
 }
 
-func (d *Document) advise(ctx context.Context, now *asked) {
+func (d *Document) advise(now *asked) {
 	defer d.running.Done()
 	defer now.stop()
 	var made *Advice
 	err := guarded(func() (err error) {
-		made, err = d.AdviceOn(ctx, now.of, now.system, d.advising(now))
+		made, err = d.AdviceOn(now.ctx, now.of, now.system, d.advising(now))
 		return err
 	})
 	d.mu.Lock()

@@ -102,7 +102,8 @@ func TestOrder(t *testing.T) {
 	}
 }
 
-// What was solved once is not solved again: a second climb over the same text takes no time worth naming, and says the same.
+// What was solved once is not solved again: a second climb over the same text, or with a reading typed in,
+// takes no time worth naming, and says the same.
 func TestCache(t *testing.T) {
 	cache := &fixfirst.Cache{}
 	s, l := whole(t, cache)
@@ -114,6 +115,14 @@ func TestCache(t *testing.T) {
 	}
 	if again.Total() != l.Total() || len(again.Steps) != len(l.Steps) {
 		t.Errorf("%+v, before %+v", again.Total(), l.Total())
+	}
+	read := *s
+	read.File = s.File.Clone()
+	if err := read.File.SetReading("idling", "M1.power", "5 kW"); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := fixfirst.Climb(ctx, &read, s.Circuits[0], fixfirst.Options{Cache: cache}); err != nil {
+		t.Error("a reading typed has everything solved again")
 	}
 	if _, err := fixfirst.Climb(ctx, s, s.Circuits[0], fixfirst.Options{}); err == nil {
 		t.Error("a cancelled climb without cache gave an answer")
