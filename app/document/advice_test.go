@@ -108,6 +108,12 @@ func TestEditGivesUpAdvice(t *testing.T) {
 	if running, _, _, _ := d.Advising(); running || made.ctx.Err() == nil {
 		t.Errorf("after an edit advice is still being made: %v, %v", running, made.ctx.Err())
 	}
+	if d.AdviceFollows() { // else it was solved already
+		d.Advise(units.Metric)
+		if running, _, _, _ := d.Advising(); running && d.AdviceFollows() {
+			t.Error("advice on the drawing before is made while the edited one is solved")
+		}
+	}
 	waitWarm(t, d)
 	mu.Lock()
 	defer mu.Unlock()

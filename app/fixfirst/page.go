@@ -89,6 +89,7 @@ func (p *Page) progress() {
 // told says why there is nothing, or why it may be old.
 func (p *Page) told(a *document.Advice, current bool) {
 	running, _, _, err := p.ctx.Doc().Advising()
+	running = running || p.ctx.Doc().AdviceFollows()
 	text := ""
 	switch {
 	case p.ctx.Solution() == nil:

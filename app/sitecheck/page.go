@@ -77,7 +77,7 @@ func (p *Page) Changed(w station.What) {
 	switch {
 	case plan == nil && err != nil:
 		text = "The plan could not be made: " + err.Error()
-	case plan == nil && running:
+	case plan == nil && (running || p.ctx.Solution() != nil && doc.AdviceFollows()):
 		text = "Making the plan: the circuit is balanced with one fault after the other, to say what each looks like…"
 	case plan == nil:
 		text = "The test plan stands here as soon as the circuit as found can be solved over a duty that has hours a year."
