@@ -37,9 +37,6 @@ func sheet(seed int64) (blocks []Box, nets []Net) {
 	return blocks, nets
 }
 
-// lerp is the point at a share of the way from p to q.
-func lerp(p, q Pt, f float64) Pt { return p.add(q.sub(p).scale(f)) }
-
 // walk gives all points of a segment at steps of half a module.
 func walk(s [2]Pt) []Pt {
 	n := int(math.Round(2 * (math.Abs(s[0].X-s[1].X) + math.Abs(s[0].Y-s[1].Y))))
