@@ -66,8 +66,10 @@ func printDecision(w io.Writer, d audit.Decision) {
 		rows = append(rows, []string{f.Name, f.Text})
 	}
 	table(w, rows)
-	if d.Oil != "" {
-		wrap(w, d.Oil)
+	for _, text := range []string{d.Cooler, d.Oil} {
+		if text != "" {
+			wrap(w, text)
+		}
 	}
 	for _, s := range d.Warnings {
 		wrap(w, "⚠ "+s)

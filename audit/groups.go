@@ -42,7 +42,7 @@ const (
 )
 
 // groupOf names the group that a loss belongs to. The relief valve inside a charge
-// pump counts as a relief valve; one that is vented, while it is, as what unloads a pump.
+// pump counts as a relief valve; what goes round through a vented one, or the centre of a valve, unloads a pump.
 func groupOf(c *circuit.Circuit, l LossRow) string {
 	if l.Kind == "unloaded circulation" {
 		return aroundGroup
