@@ -37,7 +37,7 @@ func printReport(w io.Writer, r *audit.Report) {
 	if len(r.Findings) > 0 {
 		heading(w, "Findings")
 		for _, f := range r.Findings {
-			fmt.Fprintf(w, "  %-7s %s: %s\n", f.Level, f.Circuit, f.Text)
+			fmt.Fprintf(w, "  %-7s %s: %s\n", f.Level, whereFound(f), f.Text)
 		}
 	}
 	heading(w, "Cautions")

@@ -129,7 +129,7 @@ func (d *Document) rebind(o origin) (revision, ticket int) {
 	if f == nil { // excluded: the text was read before
 		return 0, 0
 	}
-	if slices.Equal(f.Sources, now.file.Sources) && slices.Equal(f.Findings(), now.file.Findings()) {
+	if f.Fingerprint() == now.file.Fingerprint() && slices.Equal(f.Findings(), now.file.Findings()) {
 		d.now.file = f
 		return 0, 0
 	}
