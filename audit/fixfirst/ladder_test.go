@@ -224,7 +224,7 @@ func TestCureLeavesTheMachineWorking(t *testing.T) {
 
 // A worn pump that cannot reach the speed saves nothing that could be compared: the page says first that motion is missing.
 func TestMissingMotionIsSaidFirst(t *testing.T) {
-	f := asFound(twins["press, pump worn"].file(t, sources(t)))
+	f := twins["press, pump worn"].file(t, sources(t))
 	if err := f.Set("As found/P1.wear", "12"); err != nil {
 		t.Fatal(err)
 	}
@@ -243,8 +243,16 @@ func TestMissingMotionIsSaidFirst(t *testing.T) {
 		t.Fatal(err)
 	}
 	p := l[0].Page(units.Metric)
-	if !strings.HasPrefix(p.Verdict, `The circuit "As found" as found does not do its work`) || strings.Contains(p.Verdict, "less,") {
+	if !strings.HasPrefix(p.Verdict, `The circuit "As found" as it stands does not do its work`) || strings.Contains(p.Verdict, "less,") {
 		t.Errorf("verdict %q", p.Verdict)
+	}
+	if len(p.Splits) != 1 {
+		t.Errorf("%d proposals are set beside it", len(p.Splits))
+	}
+	for _, x := range p.Splits {
+		if !strings.HasPrefix(x.Text, x.Proposal+" cannot be compared with As found as it stands") {
+			t.Errorf("split %q", x.Text)
+		}
 	}
 	if text := p.Rows[len(p.Rows)-1].Cells[3].Text; text != "not comparable" {
 		t.Errorf("all, in order: %q", text)
