@@ -11,6 +11,7 @@ import (
 	"strings"
 
 	"barlitre/audit"
+	"barlitre/audit/whole"
 )
 
 // Reasons for not saving that a screen answers with a question.
@@ -102,7 +103,7 @@ func (d *Document) saveAs(now state, path string) (revision, ticket int, err err
 	}
 	if err != nil {
 		for _, c := range copied {
-			err = errors.Join(err, removeFile(c))
+			err = errors.Join(err, whole.Remove(c))
 		}
 		return 0, 0, err
 	}
@@ -182,7 +183,7 @@ func (d *Document) copyRecordings(now state, path string) (made []string, err er
 			}
 			data, err := wholeFile(open, name)
 			if err != nil {
-				return made, fmt.Errorf("save %s: the recording %s cannot be read to be copied along: %w%s", path, filepath.Join(from, name), plain(err), d.safe(now))
+				return made, fmt.Errorf("save %s: the recording %s cannot be read to be copied along: %w%s", path, filepath.Join(from, name), whole.Plain(err), d.safe(now))
 			}
 			target := filepath.Join(to, filepath.FromSlash(name))
 			if there, err := os.ReadFile(target); err == nil {
@@ -192,7 +193,7 @@ func (d *Document) copyRecordings(now state, path string) (made []string, err er
 				continue
 			}
 			if err := copyTo(target, data); err != nil {
-				return made, fmt.Errorf("save %s: the recording %s cannot be copied to %s: %w%s", path, name, target, plain(err), d.safe(now))
+				return made, fmt.Errorf("save %s: the recording %s cannot be copied to %s: %w%s", path, name, target, whole.Plain(err), d.safe(now))
 			}
 			made = append(made, target)
 		}
@@ -213,12 +214,5 @@ func copyTo(path string, data []byte) error {
 	if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
 		return err
 	}
-	tmp, err := os.CreateTemp(filepath.Dir(path), ".barlitre-*")
-	if err != nil {
-		return err
-	}
-	if err := errors.Join(tmp.Chmod(0o644), tmp.Close()); err != nil {
-		return errors.Join(err, removeFile(tmp.Name()))
-	}
-	return writeWhole(path, tmp.Name(), data)
+	return whole.Write(path, whole.Bytes(data))
 }
