@@ -48,6 +48,17 @@ func (f *File) textComputed() []byte {
 
 // addTables adds the tables that blocks name.
 func (f *File) addTables(sum hash.Hash, c *circuit.Circuit) {
+	for _, x := range tablesOf(c) {
+		if t := f.tables[x.name]; t != nil && t.Table != nil {
+			fmt.Fprintf(sum, "\x00%s.%s %s", x.block, x.key, t.SHA256)
+		}
+	}
+}
+
+// tableNamed is a file beside the audit file that a block names.
+type tableNamed struct{ block, key, name string }
+
+func tablesOf(c *circuit.Circuit) (out []tableNamed) {
 	for i := range c.Blocks {
 		b := &c.Blocks[i]
 		kind := circuit.KindNamed(b.Kind)
@@ -55,12 +66,32 @@ func (f *File) addTables(sum hash.Hash, c *circuit.Circuit) {
 			continue
 		}
 		for _, p := range kind.Params {
-			if p.Type != circuit.FileRef {
-				continue
-			}
-			if t := f.tables[b.Word(p.Key)]; t != nil && t.Table != nil {
-				fmt.Fprintf(sum, "\x00%s.%s %s", b.ID, p.Key, t.SHA256)
+			if name := b.Word(p.Key); p.Type == circuit.FileRef && name != "" {
+				out = append(out, tableNamed{b.ID, p.Key, name})
 			}
 		}
 	}
+	return out
+}
+
+// Beside lists the files beside the audit file that it names, each once: recordings, and tables of measured points.
+func (f *File) Beside() (names []string) {
+	add := func(name string) {
+		if !slices.Contains(names, name) {
+			names = append(names, name)
+		}
+	}
+	for _, s := range f.Sources {
+		for _, name := range s.Files() {
+			add(name)
+		}
+	}
+	for _, c := range f.Circuits {
+		for _, t := range tablesOf(c.Circuit) {
+			if f.tables[t.name] != nil { // what could not be read is not there to be handed on
+				add(t.name)
+			}
+		}
+	}
+	return names
 }

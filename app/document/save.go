@@ -97,7 +97,7 @@ func fullName(path string) (string, error) {
 // saveAs is SaveAs with files held; revision is not 0 when the file reads otherwise
 // at its new place.
 func (d *Document) saveAs(now state, path string) (revision, ticket int, err error) {
-	copied, err := d.copyRecordings(now, path)
+	copied, err := d.copyBeside(now, path)
 	if err == nil {
 		err = d.store(now, path)
 	}
@@ -168,35 +168,33 @@ func (d *Document) safe(now state) string {
 	return text
 }
 
-// copyRecordings puts the recordings that an audit names beside a path, and returns
+// copyBeside puts the recordings and tables that an audit names beside a path, and returns
 // the files it made.
-func (d *Document) copyRecordings(now state, path string) (made []string, err error) {
+func (d *Document) copyBeside(now state, path string) (made []string, err error) {
 	from, to := filepath.Dir(now.Path), filepath.Dir(path)
 	if now.Path != "" && from == to {
 		return nil, nil
 	}
 	open := now.opener()
-	for _, s := range now.file.Sources {
-		for _, name := range s.Files() {
-			if open == nil {
-				continue
-			}
-			data, err := wholeFile(open, name)
-			if err != nil {
-				return made, fmt.Errorf("save %s: the recording %s cannot be read to be copied along: %w%s", path, filepath.Join(from, name), whole.Plain(err), d.safe(now))
-			}
-			target := filepath.Join(to, filepath.FromSlash(name))
-			if there, err := os.ReadFile(target); err == nil {
-				if !bytes.Equal(there, data) {
-					return made, fmt.Errorf("save %s: the recording %s would replace a different file, %s; choose another folder%s", path, name, target, d.safe(now))
-				}
-				continue
-			}
-			if err := copyTo(target, data); err != nil {
-				return made, fmt.Errorf("save %s: the recording %s cannot be copied to %s: %w%s", path, name, target, whole.Plain(err), d.safe(now))
-			}
-			made = append(made, target)
+	if open == nil {
+		return nil, nil
+	}
+	for _, name := range now.file.Beside() {
+		data, err := wholeFile(open, name)
+		if err != nil {
+			return made, fmt.Errorf("save %s: %s, which the audit names, cannot be read to be copied along: %w%s", path, filepath.Join(from, name), whole.Plain(err), d.safe(now))
 		}
+		target := filepath.Join(to, filepath.FromSlash(name))
+		if there, err := os.ReadFile(target); err == nil {
+			if !bytes.Equal(there, data) {
+				return made, fmt.Errorf("save %s: %s, which the audit names, would replace a different file, %s; choose another folder%s", path, name, target, d.safe(now))
+			}
+			continue
+		}
+		if err := copyTo(target, data); err != nil {
+			return made, fmt.Errorf("save %s: %s, which the audit names, cannot be copied to %s: %w%s", path, name, target, whole.Plain(err), d.safe(now))
+		}
+		made = append(made, target)
 	}
 	return made, nil
 }
