@@ -42,16 +42,24 @@ func count(n int, one, many string) string {
 	return fmt.Sprintf("%d %s", n, many)
 }
 
-// printFindings writes findings as file:line: level: [circuit] text.
+// printFindings writes findings as file:line: level: [circuit, duties] text.
 func printFindings(w io.Writer, path string, found []circuit.Finding) {
 	for _, f := range found {
 		where := path
 		if f.Line > 0 {
 			where = fmt.Sprintf("%s:%d", path, f.Line)
 		}
-		if f.Circuit != "" {
-			where += ": " + f.Circuit
+		if text := whereFound(f); text != "" {
+			where += ": " + text
 		}
 		fmt.Fprintf(w, "%s: %s: %s\n", where, f.Level, f.Text)
 	}
+}
+
+// whereFound names the circuit of a finding, and its duties where it is not of all.
+func whereFound(f circuit.Finding) string {
+	if f.Circuit == "" || f.Duty == "" {
+		return f.Circuit + f.Duties()
+	}
+	return f.Circuit + ", " + f.Duties()
 }

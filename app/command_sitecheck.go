@@ -2,51 +2,32 @@ package main
 
 import (
 	"context"
-	"flag"
 	"fmt"
 	"io"
-	"os"
-	"os/signal"
 
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
 	"barlitre/audit/sitecheck"
+	"barlitre/machines/units"
 )
 
 // siteCheck prints the test plan of the circuits as found, and what the readings in the file say.
 func siteCheck(args []string, out, errs io.Writer) int {
-	files, set, system, err := readCall("sitecheck", args, errs, nil)
-	if err == flag.ErrHelp {
-		return exitOK
-	}
-	if err != nil {
-		fmt.Fprintln(errs, "barlitre sitecheck:", err)
-		return exitUnreadable
-	}
-	ctx, cancel := signal.NotifyContext(context.Background(), os.Interrupt)
-	defer cancel()
-	worst := exitOK
-	for _, path := range files {
-		s, code := solveFile(ctx, "sitecheck", path, set, audit.Options{}, errs)
-		worst = worse(worst, code)
-		if s == nil {
-			continue
-		}
+	return eachSolved("sitecheck", args, errs, func(ctx context.Context, s *audit.Solution, system units.System) error {
 		ladders, err := fixfirst.All(ctx, s, fixfirst.Options{System: system})
-		var plans []*sitecheck.Plan
-		if err == nil {
-			plans, err = sitecheck.All(ctx, s, sitecheck.Options{System: system, Ladders: ladders})
-		}
 		if err != nil {
-			fmt.Fprintf(errs, "barlitre sitecheck: %s: %v\n", path, err)
-			return exitUnreadable
+			return err
+		}
+		plans, err := sitecheck.All(ctx, s, sitecheck.Options{System: system, Ladders: ladders})
+		if err != nil {
+			return err
 		}
 		fmt.Fprintln(out, s.File.Title)
 		for _, p := range plans {
 			printSiteCheck(out, p, s.File.Readings)
 		}
-	}
-	return worst
+		return nil
+	})
 }
 
 func printSiteCheck(w io.Writer, p *sitecheck.Plan, readings []audit.Reading) {

@@ -37,7 +37,7 @@ func printReport(w io.Writer, r *audit.Report) {
 	if len(r.Findings) > 0 {
 		heading(w, "Findings")
 		for _, f := range r.Findings {
-			fmt.Fprintf(w, "  %-7s %s: %s\n", f.Level, f.Circuit, f.Text)
+			fmt.Fprintf(w, "  %-7s %s: %s\n", f.Level, whereFound(f), f.Text)
 		}
 	}
 	heading(w, "Cautions")
@@ -66,8 +66,10 @@ func printDecision(w io.Writer, d audit.Decision) {
 		rows = append(rows, []string{f.Name, f.Text})
 	}
 	table(w, rows)
-	if d.Oil != "" {
-		wrap(w, d.Oil)
+	for _, text := range []string{d.Cooler, d.Oil} {
+		if text != "" {
+			wrap(w, text)
+		}
 	}
 	for _, s := range d.Warnings {
 		wrap(w, "⚠ "+s)

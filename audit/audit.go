@@ -212,28 +212,31 @@ func (j *job) guard(dutyName string, do func()) (stopped bool) {
 	return false
 }
 
-// note keeps findings, each once, with circuit and duty filled in.
+// note keeps findings, each once, with circuit and duties filled in.
 func (j *job) note(dutyName string, fs []circuit.Finding) {
 	for _, f := range fs {
 		if f.Circuit == "" {
 			f.Circuit = j.run.Circuit.Name
 		}
-		if !j.known(f) {
-			if f.Duty == "" {
-				f.Duty = dutyName
-			}
+		if f.Duty == "" {
+			f.Duty = dutyName
+		}
+		if o := j.alike(f); o == nil {
 			j.run.Findings = append(j.run.Findings, f)
+		} else if o.Duty != "" && f.Duty != "" {
+			o.ShowsIn(f.Duty)
 		}
 	}
 }
 
-func (j *job) known(f circuit.Finding) bool {
-	for _, o := range j.run.Findings {
-		if o.Text == f.Text && o.Block == f.Block && (f.Duty == "" || o.Duty == "" || o.Duty == f.Duty) {
-			return true
+// alike is what was noted already in the same words of the same block, or nil.
+func (j *job) alike(f circuit.Finding) *circuit.Finding {
+	for i := range j.run.Findings {
+		if o := &j.run.Findings[i]; o.Text == f.Text && o.Block == f.Block && o.Level == f.Level {
+			return o
 		}
 	}
-	return false
+	return nil
 }
 
 // solveDuty runs the circuit over one duty; the error is that of the context or of a CSV file.

@@ -62,11 +62,14 @@ func (s *Solution) Cautions() []CautionText {
 }
 
 // sentence writes a finding as a caution does: without the block, which stands before
-// the topic already, with a capital and a full stop.
+// the topic already, with the duties that it shows in, a capital and a full stop.
 func sentence(f circuit.Finding) string {
 	text := strings.TrimSpace(strings.TrimPrefix(f.Text, f.Block+": "))
 	if text == "" {
 		return ""
+	}
+	if f.Duty != "" {
+		text = "in " + f.Duties() + ": " + text
 	}
 	first, n := utf8.DecodeRuneInString(text)
 	text = string(unicode.ToUpper(first)) + text[n:]

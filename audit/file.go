@@ -12,6 +12,7 @@ import (
 
 	"gopkg.in/yaml.v3"
 
+	"barlitre/audit/whole"
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/circuit/logged"
@@ -438,29 +439,7 @@ func (f *File) Bytes() []byte { return slices.Clone(f.data) }
 // Save writes the file. An existing file is replaced at once or not at all, and
 // keeps its permissions. Recordings are not copied along.
 func (f *File) Save(path string) error {
-	if target, err := filepath.EvalSymlinks(path); err == nil {
-		path = target // replace what a link points to, not the link
-	}
-	mode := os.FileMode(0o644)
-	if info, err := os.Stat(path); err == nil {
-		mode = info.Mode().Perm()
-	}
-	tmp, err := os.CreateTemp(filepath.Dir(path), ".barlitre-*")
-	if err != nil {
-		return fmt.Errorf("save %s: %w", path, err)
-	}
-	defer os.Remove(tmp.Name()) // gone already when all went well
-	_, err = tmp.Write(f.data)
-	for _, step := range []func() error{
-		func() error { return tmp.Chmod(mode) }, tmp.Sync, tmp.Close,
-		func() error { return os.Rename(tmp.Name(), path) },
-	} {
-		if err == nil {
-			err = step()
-		}
-	}
-	if err != nil {
-		tmp.Close() // a second close after a failed one is harmless
+	if err := whole.Write(path, whole.Bytes(f.data)); err != nil {
 		return fmt.Errorf("save %s: %w; the file is as it was", path, err)
 	}
 	return nil

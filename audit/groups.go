@@ -17,6 +17,7 @@ type group struct {
 const (
 	reliefGroup   = "relief valves"
 	meteringGroup = "valves: metering, compensators, load holding"
+	aroundGroup   = "unloading and flushing"
 )
 
 // groups lists them in the order of the way from the mains to the load.
@@ -26,7 +27,7 @@ var groups = []group{
 	{"pumps and hydraulic motors", []string{"pump", "switched_machine", "charge_pump", "motor", "flow_divider", "gearbox"}},
 	{reliefGroup, []string{"relief"}},
 	{"accumulators", []string{"accumulator"}},
-	{"unloading and flushing", []string{"unloading", "unloading_pilot", "flushing"}},
+	{aroundGroup, []string{"unloading", "unloading_pilot", "flushing"}},
 	{meteringGroup, []string{"valve", "section_6_3", "compensator", "flow_sharing", "orifice", "throttle_check",
 		"flow_control", "flow_control_3", "reducing", "sequence", "counterbalance"}},
 	{"lines, filters and check valves", []string{"line", "filter", "cooler", "flow_point", "check", "pilot_check", "shuttle", "shuttle_flow", "junction"}},
@@ -41,8 +42,11 @@ const (
 )
 
 // groupOf names the group that a loss belongs to. The relief valve inside a charge
-// pump counts as a relief valve.
+// pump counts as a relief valve; what goes round through a vented one, or the centre of a valve, unloads a pump.
 func groupOf(c *circuit.Circuit, l LossRow) string {
+	if l.Kind == "unloaded circulation" {
+		return aroundGroup
+	}
 	if strings.Contains(l.Kind, "relief") || strings.Contains(l.Kind, "relieving") {
 		return reliefGroup
 	}

@@ -17,3 +17,17 @@ func TestEveryKindHasAGroup(t *testing.T) {
 		}
 	}
 }
+
+// What a relief valve lets round while it is vented unloads the pump: it is no spill.
+func TestVentedReliefUnloads(t *testing.T) {
+	c := &circuit.Circuit{Blocks: []circuit.Block{{ID: "RV1", Kind: "relief"}}}
+	for _, l := range circuit.KindNamed("relief").Losses {
+		want := reliefGroup
+		if l.Name != "relief spill" {
+			want = aroundGroup
+		}
+		if g := groupOf(c, LossRow{Block: "RV1", Kind: l.Name}); g != want {
+			t.Errorf("%s is told with %s", l.Name, g)
+		}
+	}
+}

@@ -93,3 +93,29 @@ func TestWordsOfSmallAndSummedFigures(t *testing.T) {
 		t.Errorf("verdict %q", r.Decisions[0].Verdict)
 	}
 }
+
+// The sentence beside the coolers of a decision names what the request sheet asks for, to the digit; without the section heat
+// there is nothing to name.
+func TestCoolerOfTheDecisionIsTiedToTheRequest(t *testing.T) {
+	s := sampleWith(t, "baling-press.yaml", nil)
+	d := s.Report(units.Metric).Decisions[0]
+	asked := map[string]string{}
+	for _, r := range s.Requests(units.Metric) {
+		for _, g := range r.Groups {
+			for _, row := range g.Rows {
+				asked[r.Circuit+" "+row.Name] = row.Value
+			}
+		}
+	}
+	for _, want := range []string{asked["As found Capacity, clean"] + " clean", asked["As found Capacity asked for"] + " asked for (" + asked["As found Oil in the tank wanted"], "Pump-controlled none needed", "whole heat"} {
+		if len(want) < 10 || !strings.Contains(d.Cooler, want) {
+			t.Errorf("%q is not in %q", want, d.Cooler)
+		}
+	}
+	for _, c := range s.Circuits {
+		c.Warmth = nil
+	}
+	if text := s.Report(units.Metric).Decisions[0].Cooler; !strings.Contains(text, "whole heat") || strings.Contains(text, "request") {
+		t.Errorf("nothing is known of the tank, and it says %q", text)
+	}
+}

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"strings"
 
 	"barlitre/audit/thermal"
 	"barlitre/circuit"
@@ -104,16 +105,57 @@ func requestLoad(p printer, c *CircuitRun) RequestGroup {
 		add("Capacity, clean", "none does", design.Fault)
 	default:
 		add("Capacity, clean", p.cooler(design.Asked()), capacityNote(&design))
-		factor := h.Fouling
-		note := "× " + units.Number(h.Fouling, 3) + " for fouling"
-		if alt := h.Section.number("altitude", &h.Oil); alt > 0 && h.Section.Word("cooler") != waterCooler {
-			factor /= math.Max(0.1, 1-0.1*alt/1000)
-			note += ", / " + units.Number(math.Max(0.1, 1-0.1*alt/1000), 3) + " for " + units.Number(alt, 3) + "\u202fm of altitude"
-		}
+		factor, note := h.reserve()
 		add("Capacity asked for", p.cooler(factor*design.Asked()), note+"; no other reserve is in it")
 	}
 	g.Rows = append(g.Rows, blank("Reserve in the maker's figures", "maker"))
 	return g
+}
+
+// reserve is what a clean capacity is multiplied by, and for what.
+func (h *HeatStudy) reserve() (factor float64, note string) {
+	factor, note = h.Fouling, "× "+units.Number(h.Fouling, 3)+" for fouling"
+	if alt := h.Section.number("altitude", &h.Oil); alt > 0 && h.Section.Word("cooler") != waterCooler {
+		thin := math.Max(0.1, 1-0.1*alt/1000)
+		factor /= thin
+		note += ", / " + units.Number(thin, 3) + " for " + units.Number(alt, 3) + "\u202fm of altitude"
+	}
+	return factor, note
+}
+
+// asked says what cooler the request sheet asks for, "" where there is no sheet.
+func (h *HeatStudy) asked(p printer) string {
+	if h == nil || h.Week == nil {
+		return ""
+	}
+	design := h.Needs[len(h.Needs)-1]
+	factor, _ := h.reserve()
+	switch {
+	case h.needless():
+		return "none needed"
+	case design.Fault != "":
+		return "none does"
+	}
+	return p.cooler(design.Asked()) + " clean, " + p.cooler(factor*design.Asked()) + " asked for (" + p.degrees(h.Wanted) + " in the tank)"
+}
+
+// coolerText says for what the cooler beside two circuits is, and what the request sheet asks for in its place.
+func (s *Solution) coolerText(p printer, c *Comparison) string {
+	if !known(s.Oil) || !known(s.Air) {
+		return ""
+	}
+	text := fmt.Sprintf("The cooler for it takes the whole heat to the oil, oil entering at %s and air entering at %s, the same in both circuits: a measure to compare them by.",
+		p.degrees(s.Oil), p.degrees(s.Air))
+	var asked []string
+	for _, run := range []*CircuitRun{c.Base, c.Proposal} {
+		if x := run.Warmth.asked(p); x != "" {
+			asked = append(asked, run.Circuit.Name+" "+x)
+		}
+	}
+	if len(asked) > 0 {
+		text += " What to order stands on the cooler request sheet, for the heaviest duty in the hottest hour, less what the walls take: " + strings.Join(asked, "; ") + "."
+	}
+	return text
 }
 
 // alarmText is how long the relief valve may blow.

@@ -93,9 +93,9 @@ func (o *operation) Sample(s *circuit.Sample) error {
 // Part sums up the time steps after before, and the time from it to the first of them.
 func (o *operation) Part(_, _ int, before *circuit.Sample) circuit.Receiver {
 	p := &operation{}
-	for _, m := range o.machines {
-		m.states, m.booked = map[stateKey]*Operating{}, nil
-		p.machines = append(p.machines, m)
+	for i := range o.machines { // not their sums, which Join changes meanwhile
+		m := &o.machines[i]
+		p.machines = append(p.machines, operated{block: m.block, w: m.w, e: m.e, p: m.p, s: m.s, shaft: m.shaft, states: map[stateKey]*Operating{}})
 	}
 	if before != nil {
 		_ = p.Sample(before) // never fails, and books nothing yet

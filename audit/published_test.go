@@ -2,6 +2,7 @@ package audit_test
 
 import (
 	"math"
+	"slices"
 	"testing"
 
 	"barlitre/audit"
@@ -130,6 +131,12 @@ func TestPublishedUnloading(t *testing.T) {
 	near(t, "unloaded [hp], printed", mean(b, b.Balance.SupplyIn)/units.Horsepower, 0.29, 0.006, 0)
 	near(t, "relief valve [hp]", mean(a, a.Balance.SupplyIn)/units.Horsepower, 11.669, 0.001, 0)
 	near(t, "unloaded [hp]", mean(b, b.Balance.SupplyIn)/units.Horsepower, 0.2917, 0.001, 0)
+	kinds := map[string]float64{}
+	for _, l := range append(slices.Clone(a.Balance.Losses), b.Balance.Losses...) {
+		kinds[l.Kind] += l.Energy.Total()
+	}
+	near(t, "spilled, the first alone [J]", kinds["relief spill"], a.Balance.SupplyIn.Total(), 1e-9, 0)
+	near(t, "let round, the second alone [J]", kinds["unloaded circulation"], b.Balance.SupplyIn.Total(), 1e-9, 0)
 	near(t, "booked as idle [J]", a.Balance.SupplyIn.Idle, a.Balance.SupplyIn.Total(), 1e-12, 0)
 }
 

@@ -119,9 +119,9 @@ func (r *recorder) end() {
 	w.begun = false
 }
 
-// Part takes time steps into stretches that end where those of the whole do.
+// Part takes time steps into stretches that end where those of the whole do. It reads nothing that Join changes meanwhile.
 func (r *recorder) Part(from, _ int, _ *circuit.Sample) circuit.Receiver {
-	n := len(r.values)
+	n := len(r.plot.Signals) + len(r.plot.Powers)
 	return &recorder{stride: r.stride, seen: from, part: true, now: newStretch(n), values: make([]float64, n)}
 }
 

@@ -48,6 +48,7 @@ type Decision struct {
 	Base, Proposal string
 	Verdict        string   // in one sentence
 	Oil            string   // what the oil temperature found does to the saving, in a sentence or two; "" where it is not known
+	Cooler         string   // what the coolers of Rows are for, and what the request sheet asks for
 	Warnings       []string // what stands against the verdict, in words
 	Rows           []DecisionRow
 	Outcome        []Figure // saving, money, payback, CO2

@@ -18,6 +18,7 @@ func (s *Solution) decision(p printer, c *Comparison) Decision {
 	if d.Oil, stands = s.oilText(p, c); stands {
 		d.Warnings = append(d.Warnings, fmt.Sprintf("the saving is more than %s smaller with the oil as warm as it gets: see the sentence on oil temperature", units.Format(oilShare, units.Percent, 2)))
 	}
+	d.Cooler = s.coolerText(p, c)
 	d.Source = groupTable(p, c)
 	d.Rows = s.decisionRows(p, c)
 	d.Outcome = s.outcome(p, c)

@@ -29,7 +29,7 @@ var chargePumpKind = &Kind{
 		m := &chargeModel{}
 		m.machine = k.machine(b, "P", "S", k.shaftAt(b), k.fixed())
 		m.relief = reliefModel{P: m.P, T: k.node(b, "T"), q: k.unknown(otherRow, b.ID+" relief"), crack: k.param(b, "charge"), set: -1, setFlow: -1, vent: -1,
-			override: k.param(b, "override"), qP: -1, qT: k.port(b, "T"), loss: k.channel(Loss, b, "charge relief")}
+			override: k.param(b, "override"), qP: -1, qT: k.port(b, "T"), spill: k.channel(Loss, b, "charge relief"), around: -1}
 		m.k = k.Compiled
 		return m
 	},

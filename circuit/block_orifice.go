@@ -3,6 +3,7 @@ package circuit
 import (
 	"math"
 
+	"barlitre/machines"
 	"barlitre/machines/units"
 )
 
@@ -54,7 +55,7 @@ func (m *orificeModel) bind(b *binding) {
 	q, dp := b.get(m.qN, 0), b.p[m.dN]
 	if m.dia >= 0 {
 		d := b.p[m.dia]
-		q = b.p[m.cd] * math.Pi / 4 * d * d * math.Sqrt(2*dp/b.cond.Density)
+		q = machines.OrificeFlow(dp, b.p[m.cd], math.Pi/4*d*d, b.cond.Density)
 	}
 	m.t = throatOf(q/b.scales.q, dp/b.scales.p)
 }

@@ -20,8 +20,8 @@ var reliefKind = &Kind{
 		{Key: "override", Title: "Override", Symbol: "R", Dim: units.FlowResistance, Default: "10 bar per 100 L/min", Origin: Assumed, Source: "pilot-operated valve, common practice 3 to 12 % of the setting", Max: 1e12, Text: "pressure rise by flow"},
 		{Key: "vented", Title: "Vented pressure", Symbol: "pv", Dim: units.Pressure, Max: 100e5, Text: "opening pressure while vented"},
 	},
-	Losses:    []LossKind{{"relief spill", ToOil, "P = (pP − pT)·q"}},
-	Equations: []Equation{{"q = 0 for Δp <= pc; Δp = pc + R·q above; with set: pc = ps − R·qs", "linear override, e.g. Esposito, Fluid Power with Applications, ch. 8"}},
+	Losses:    []LossKind{{"relief spill", ToOil, "P = (pP − pT)·q"}, {"unloaded circulation", ToOil, "P = (pP − pT)·q while vented"}},
+	Equations: []Equation{{"q = 0 for Δp <= pc; Δp = pc + R·q above; with set: pc = ps − R·qs; while vented: pc = pv", "linear override, e.g. Esposito, Fluid Power with Applications, ch. 8"}},
 	Symbol:    func(*Block) string { return "relief_direct" },
 	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 		_, crack := b.Values["crack"]
@@ -41,16 +41,20 @@ var reliefKind = &Kind{
 		}
 	},
 	build: func(k *compiler, b *Block) model {
-		return &reliefModel{P: k.node(b, "P"), T: k.node(b, "T"), q: k.unknown(otherRow, b.ID),
+		m := &reliefModel{P: k.node(b, "P"), T: k.node(b, "T"), q: k.unknown(otherRow, b.ID),
 			crack: k.param(b, "crack"), set: k.param(b, "set"), setFlow: k.param(b, "set_flow"), override: k.param(b, "override"), vent: k.param(b, "vented"),
-			qP: k.port(b, "P"), qT: k.port(b, "T"), loss: k.channel(Loss, b, "relief spill")}
+			qP: k.port(b, "P"), qT: k.port(b, "T"), spill: k.channel(Loss, b, "relief spill"), around: -1}
+		if m.vent >= 0 {
+			m.around = k.channel(Loss, b, "unloaded circulation")
+		}
+		return m
 	},
 }
 
 type reliefModel struct {
 	P, T, q                             slot
 	crack, set, setFlow, override, vent int
-	qP, qT, loss                        int
+	qP, qT, spill, around, booked       int // booked is the one of the two losses that takes the flow now
 	opens, slope, vented, now           float64
 }
 
@@ -68,9 +72,9 @@ func (m *reliefModel) bind(b *binding) {
 }
 
 func (m *reliefModel) begin(s *step) {
-	m.now = m.opens
-	if s.unloaded() {
-		m.now = m.vented
+	m.now, m.booked = m.opens, m.spill
+	if m.vent >= 0 && s.unloaded() {
+		m.now, m.booked = m.vented, m.around
 	}
 }
 
@@ -79,6 +83,6 @@ func (m *reliefModel) eval(e *eval) {
 	e.drop(m.P, m.T, m.q, m.now+m.slope*q, m.slope)
 }
 
-func (m *reliefModel) book(k *booking) { k.through(m.P, m.T, k.val(m.q), m.qP, m.qT, m.loss) }
+func (m *reliefModel) book(k *booking) { k.through(m.P, m.T, k.val(m.q), m.qP, m.qT, m.booked) }
 
 func (m *reliefModel) cold(s *step, level int, x []float64) { x[m.q] = 0.05 }

@@ -1,6 +1,10 @@
 package circuit
 
-import "fmt"
+import (
+	"fmt"
+	"slices"
+	"strings"
+)
 
 // Level ranks a finding.
 type Level string
@@ -20,6 +24,7 @@ type Finding struct {
 	Level     Level   `json:"level"`
 	Circuit   string  `json:"circuit,omitempty"`
 	Duty      string  `json:"duty,omitempty"`
+	Besides   string  `json:"duties_besides,omitempty"` // further duties in which the same shows, one a line
 	Block     string  `json:"block,omitempty"`
 	Parameter string  `json:"parameter,omitempty"`
 	Time      float64 `json:"t_s,omitempty"` // s, where it shows first or worst
@@ -67,6 +72,32 @@ func (f Finding) Error() string {
 		return fmt.Sprintf("line %d: %s", f.Line, f.Text)
 	}
 	return f.Text
+}
+
+// Duties names the duties in which it shows, "day and night"; "" where it is of none or of all.
+func (f *Finding) Duties() string {
+	if f.Duty == "" {
+		return ""
+	}
+	return Names(f.duties())
+}
+
+func (f *Finding) duties() []string {
+	if f.Besides == "" {
+		return []string{f.Duty}
+	}
+	return append([]string{f.Duty}, strings.Split(f.Besides, "\n")...)
+}
+
+// ShowsIn adds a duty to those in which it shows.
+func (f *Finding) ShowsIn(duty string) {
+	switch {
+	case slices.Contains(f.duties(), duty):
+	case f.Besides == "":
+		f.Besides = duty
+	default:
+		f.Besides += "\n" + duty
+	}
 }
 
 // Marked reports whether a finding is of that block and not of all of its kind, so that

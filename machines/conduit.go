@@ -121,17 +121,10 @@ func NominalFlow(dp, qN, dpN, ql float64) (q, slope float64) {
 	return Sign(dp) * q, qN * qN / (dpN * s)
 }
 
-// OrificeDrop returns the pressure drop [Pa] and its slope at flow q [m³/s] of an orifice of discharge
-// coefficient cd [–] (0.6 to 0.65 for a sharp edge, from memory) and area [m²] > 0 at density rho [kg/m³],
+// OrificeFlow returns the flow [m³/s] through an orifice of discharge coefficient cd [–] (0.6 to 0.65 for a sharp
+// edge, from memory) and area [m²] > 0 at a drop dp [Pa] and density rho [kg/m³]; odd in dp:
 //
 //	q = Cd·A·√(2Δp/ρ)        (15)
-//
-// rounded off below ql as in equation (14).
-func OrificeDrop(q, cd, area, rho, ql float64) (dp, slope float64) {
-	return NominalDrop(q, cd*area*math.Sqrt(2/rho), 1, ql)
-}
-
-// OrificeFlow is the inverse of OrificeDrop.
-func OrificeFlow(dp, cd, area, rho, ql float64) (q, slope float64) {
-	return NominalFlow(dp, cd*area*math.Sqrt(2/rho), 1, ql)
+func OrificeFlow(dp, cd, area, rho float64) float64 {
+	return Sign(dp) * cd * area * math.Sqrt(2*math.Abs(dp)/rho)
 }

@@ -116,8 +116,9 @@ func TestPassageBetweenRegimes(t *testing.T) {
 
 // Esposito 8.4, 8.5; Sullivan 5.4.
 func TestOrifice(t *testing.T) {
-	q, _ := OrificeFlow(100*psi, 0.80, math.Pi/4*inch*inch, 0.9*water, 0)
+	q := OrificeFlow(100*psi, 0.80, math.Pi/4*inch*inch, 0.9*water)
 	expect(t, "Esposito 8.4 gpm, strict SI", q/gpm, 251.5, 1e-3)
+	expect(t, "the other way", OrificeFlow(-100*psi, 0.80, math.Pi/4*inch*inch, 0.9*water), -q, 0)
 	expect(t, "Esposito 8.4 gpm, book with the rounded 38.1", q/gpm, 252, 4e-3)
 	// Esposito 8.5: flow coefficient of 25 gpm at 100 psi, SG 0.9, is 2.37 gpm/√psi of water.
 	q, _ = NominalFlow(1*psi, 25*gpm*math.Sqrt(0.9), 100*psi, 0)
@@ -125,7 +126,7 @@ func TestOrifice(t *testing.T) {
 	q, _ = NominalFlow(1e3, 94.8*lpm*math.Sqrt(0.9), 687e3, 0)
 	expect(t, "Esposito 8.5 SI", q/lpm, 3.4312, 1e-3)
 	// Sullivan 5.4: 1000 gpm through 3.14 in² at 120 psi, SG 0.85: Cd 0.70; recomputed 0.704.
-	q, _ = OrificeFlow(120*psi, 1, 3.14*inch*inch, 0.85*water, 0)
+	q = OrificeFlow(120*psi, 1, 3.14*inch*inch, 0.85*water)
 	expect(t, "Sullivan 5.4 Cd", 1000*gpm/q, 0.704, 5e-3)
 	// Sullivan 10.1: 30 gpm at 300 psi, SG 0.85, needs a coefficient of 1.597; 5.41 takes 26.14 psi.
 	q, _ = NominalFlow(1*psi, 30*gpm*math.Sqrt(0.85), 300*psi, 0)

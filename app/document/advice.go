@@ -33,6 +33,7 @@ type adviser struct {
 type asked struct {
 	of     *audit.Solution
 	system units.System
+	ctx    context.Context
 	stop   context.CancelFunc
 }
 
@@ -51,24 +52,32 @@ func (d *Document) Advising() (running bool, done, total int, err error) {
 	return d.advice.asked != nil, d.advice.done, d.advice.total, d.advice.err
 }
 
+// AdviceFollows reports whether advice waits for what is being solved: it can be asked for when that is there.
+func (d *Document) AdviceFollows() bool {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	return d.wanted != 0 || d.warming
+}
+
 // Advise asks for advice on the last solution, in words of a family of units. Events Advising and Advised tell of it; what
-// is there or being made already is not made again. While oil temperatures are to follow there is nothing to ask: they are evidence.
+// is there or being made already is not made again. While a revision is being solved or its oil temperatures are to follow there is
+// nothing to ask: the solution before is gone soon, and temperatures are evidence.
 func (d *Document) Advise(system units.System) {
 	d.mu.Lock()
 	defer d.mu.Unlock()
 	a := &d.advice
 	switch {
-	case d.solution == nil || d.closed || d.solution.Pending,
+	case d.solution == nil || d.closed || d.wanted != 0 || d.solution.Pending,
 		a.last != nil && a.last.Of == d.solution && a.last.System == system,
 		a.asked != nil && a.asked.of == d.solution && a.asked.system == system:
 		return
 	}
 	d.stopAdvice()
 	ctx, stop := context.WithCancel(context.Background())
-	now := &asked{d.solution, system, stop}
+	now := &asked{d.solution, system, ctx, stop}
 	a.asked, a.done, a.total, a.err = now, 0, 0, nil
 	d.running.Add(1)
-	go d.advise(ctx, now)
+	go d.advise(now)
 }
 
 // stopAdvice gives up what is being made. mu is held.
@@ -87,12 +96,12 @@ func (d *Document) CancelAdvice() {
 	d.emit(Event{Kind: Advised})
 }
 
-func (d *Document) advise(ctx context.Context, now *asked) {
+func (d *Document) advise(now *asked) {
 	defer d.running.Done()
 	defer now.stop()
 	var made *Advice
 	err := guarded(func() (err error) {
-		made, err = d.AdviceOn(ctx, now.of, now.system, d.advising(now))
+		made, err = d.AdviceOn(now.ctx, now.of, now.system, d.advising(now))
 		return err
 	})
 	d.mu.Lock()

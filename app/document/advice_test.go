@@ -1,6 +1,7 @@
 package document
 
 import (
+	"sync"
 	"testing"
 	"time"
 
@@ -19,6 +20,16 @@ func waitAdvised(t *testing.T, d *Document) *Advice {
 	return nil
 }
 
+// waitWarm waits until the present revision is solved, with its oil temperatures.
+func waitWarm(t *testing.T, d *Document) {
+	t.Helper()
+	for end := time.Now().Add(60 * time.Second); !d.Current() || d.Warming(); time.Sleep(2 * time.Millisecond) {
+		if time.Now().After(end) {
+			t.Fatal("not solved in 60 s")
+		}
+	}
+}
+
 // Advice is made once asked for, belongs to a solution, and is made anew for the next.
 func TestAdviceFollowsTheSolution(t *testing.T) {
 	d := New(Options{})
@@ -26,14 +37,7 @@ func TestAdviceFollowsTheSolution(t *testing.T) {
 	if err := d.OpenSample("quayside-winch.yaml"); err != nil {
 		t.Fatal(err)
 	}
-	solved := func() {
-		for end := time.Now().Add(60 * time.Second); !d.Current() || d.Warming(); time.Sleep(2 * time.Millisecond) {
-			if time.Now().After(end) {
-				t.Fatal("not solved in 60 s")
-			}
-		}
-	}
-	solved()
+	waitWarm(t, d)
 	if a, _ := d.Advice(); a != nil {
 		t.Error("there is advice that nobody asked for")
 	}
@@ -45,7 +49,7 @@ func TestAdviceFollowsTheSolution(t *testing.T) {
 	if err := d.Edit("Lower", func(f *audit.File) error { return f.Set("As found/RV1.crack", "200 bar") }); err != nil {
 		t.Fatal(err)
 	}
-	solved()
+	waitWarm(t, d)
 	if _, current := d.Advice(); current {
 		t.Error("advice on the drawing before counts as present")
 	}
@@ -65,16 +69,55 @@ func TestCloseGivesUpAdvice(t *testing.T) {
 	if err := d.OpenSample("transfer-station.yaml"); err != nil {
 		t.Fatal(err)
 	}
-	for end := time.Now().Add(60 * time.Second); !d.Current() || d.Warming(); time.Sleep(2 * time.Millisecond) {
-		if time.Now().After(end) {
-			t.Fatal("not solved in 60 s")
-		}
-	}
+	waitWarm(t, d)
 	d.Advise(units.Metric)
 	if err := d.Abandon(); err != nil {
 		t.Fatal(err)
 	}
 	if running, _, _, _ := d.Advising(); running {
 		t.Error("it is still being made")
+	}
+}
+
+// An edit gives up advice on the drawing before it, and no advice comes of that.
+func TestEditGivesUpAdvice(t *testing.T) {
+	var mu sync.Mutex
+	advised := 0
+	d := New(Options{Notify: func(e Event) {
+		mu.Lock()
+		defer mu.Unlock()
+		if e.Kind == Advised {
+			advised++
+		}
+	}})
+	defer d.Abandon()
+	if err := d.OpenSample("transfer-station.yaml"); err != nil {
+		t.Fatal(err)
+	}
+	waitWarm(t, d)
+	d.Advise(units.Metric)
+	d.mu.Lock()
+	made := d.advice.asked
+	d.mu.Unlock()
+	if made == nil {
+		t.Fatal("no advice is being made")
+	}
+	if err := d.Edit("Lower", func(f *audit.File) error { return f.Set("As found/RV1.crack", "150 bar") }); err != nil {
+		t.Fatal(err)
+	}
+	if running, _, _, _ := d.Advising(); running || made.ctx.Err() == nil {
+		t.Errorf("after an edit advice is still being made: %v, %v", running, made.ctx.Err())
+	}
+	if d.AdviceFollows() { // else it was solved already
+		d.Advise(units.Metric)
+		if running, _, _, _ := d.Advising(); running && d.AdviceFollows() {
+			t.Error("advice on the drawing before is made while the edited one is solved")
+		}
+	}
+	waitWarm(t, d)
+	mu.Lock()
+	defer mu.Unlock()
+	if a, _ := d.Advice(); a != nil || advised != 0 {
+		t.Errorf("advice on a drawing that is gone: %v, told %d times", a, advised)
 	}
 }

@@ -11,6 +11,7 @@ import (
 	"time"
 
 	"barlitre/audit"
+	"barlitre/audit/whole"
 )
 
 // Recovery is an audit whose unsaved changes outlived a crash.
@@ -115,7 +116,7 @@ func (d *Document) Recover(r Recovery) error {
 func (s *session) load() (k kept, f *audit.File, err error) {
 	data, err := os.ReadFile(s.autosave)
 	if err != nil {
-		return k, nil, plain(err)
+		return k, nil, whole.Plain(err)
 	}
 	k, text, err := decodeAutosave(data)
 	if err != nil {
@@ -161,7 +162,7 @@ func (d *Document) Discard(r Recovery) error {
 		err = s.drop()
 	}
 	if err != nil {
-		return fmt.Errorf("discard %s: %w", r.Autosave, plain(err))
+		return fmt.Errorf("discard %s: %w", r.Autosave, whole.Plain(err))
 	}
 	return nil
 }

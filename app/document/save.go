@@ -11,6 +11,7 @@ import (
 	"strings"
 
 	"barlitre/audit"
+	"barlitre/audit/whole"
 )
 
 // Reasons for not saving that a screen answers with a question.
@@ -96,13 +97,13 @@ func fullName(path string) (string, error) {
 // saveAs is SaveAs with files held; revision is not 0 when the file reads otherwise
 // at its new place.
 func (d *Document) saveAs(now state, path string) (revision, ticket int, err error) {
-	copied, err := d.copyRecordings(now, path)
+	copied, err := d.copyBeside(now, path)
 	if err == nil {
 		err = d.store(now, path)
 	}
 	if err != nil {
 		for _, c := range copied {
-			err = errors.Join(err, removeFile(c))
+			err = errors.Join(err, whole.Remove(c))
 		}
 		return 0, 0, err
 	}
@@ -129,7 +130,7 @@ func (d *Document) rebind(o origin) (revision, ticket int) {
 	if f == nil { // excluded: the text was read before
 		return 0, 0
 	}
-	if slices.Equal(f.Sources, now.file.Sources) && slices.Equal(f.Findings(), now.file.Findings()) {
+	if f.Fingerprint() == now.file.Fingerprint() && slices.Equal(f.Findings(), now.file.Findings()) {
 		d.now.file = f
 		return 0, 0
 	}
@@ -167,35 +168,33 @@ func (d *Document) safe(now state) string {
 	return text
 }
 
-// copyRecordings puts the recordings that an audit names beside a path, and returns
+// copyBeside puts the recordings and tables that an audit names beside a path, and returns
 // the files it made.
-func (d *Document) copyRecordings(now state, path string) (made []string, err error) {
+func (d *Document) copyBeside(now state, path string) (made []string, err error) {
 	from, to := filepath.Dir(now.Path), filepath.Dir(path)
 	if now.Path != "" && from == to {
 		return nil, nil
 	}
 	open := now.opener()
-	for _, s := range now.file.Sources {
-		for _, name := range s.Files() {
-			if open == nil {
-				continue
-			}
-			data, err := wholeFile(open, name)
-			if err != nil {
-				return made, fmt.Errorf("save %s: the recording %s cannot be read to be copied along: %w%s", path, filepath.Join(from, name), plain(err), d.safe(now))
-			}
-			target := filepath.Join(to, filepath.FromSlash(name))
-			if there, err := os.ReadFile(target); err == nil {
-				if !bytes.Equal(there, data) {
-					return made, fmt.Errorf("save %s: the recording %s would replace a different file, %s; choose another folder%s", path, name, target, d.safe(now))
-				}
-				continue
-			}
-			if err := copyTo(target, data); err != nil {
-				return made, fmt.Errorf("save %s: the recording %s cannot be copied to %s: %w%s", path, name, target, plain(err), d.safe(now))
-			}
-			made = append(made, target)
+	if open == nil {
+		return nil, nil
+	}
+	for _, name := range now.file.Beside() {
+		data, err := wholeFile(open, name)
+		if err != nil {
+			return made, fmt.Errorf("save %s: %s, which the audit names, cannot be read to be copied along: %w%s", path, filepath.Join(from, name), whole.Plain(err), d.safe(now))
 		}
+		target := filepath.Join(to, filepath.FromSlash(name))
+		if there, err := os.ReadFile(target); err == nil {
+			if !bytes.Equal(there, data) {
+				return made, fmt.Errorf("save %s: %s, which the audit names, would replace a different file, %s; choose another folder%s", path, name, target, d.safe(now))
+			}
+			continue
+		}
+		if err := copyTo(target, data); err != nil {
+			return made, fmt.Errorf("save %s: %s, which the audit names, cannot be copied to %s: %w%s", path, name, target, whole.Plain(err), d.safe(now))
+		}
+		made = append(made, target)
 	}
 	return made, nil
 }
@@ -213,12 +212,5 @@ func copyTo(path string, data []byte) error {
 	if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
 		return err
 	}
-	tmp, err := os.CreateTemp(filepath.Dir(path), ".barlitre-*")
-	if err != nil {
-		return err
-	}
-	if err := errors.Join(tmp.Chmod(0o644), tmp.Close()); err != nil {
-		return errors.Join(err, removeFile(tmp.Name()))
-	}
-	return writeWhole(path, tmp.Name(), data)
+	return whole.Write(path, whole.Bytes(data))
 }

@@ -165,6 +165,33 @@ func TestSaveAsTakesRecordingsAlong(t *testing.T) {
 	}
 }
 
+// Tables of measured points that blocks name go along as well; one that was not there when the audit was read is no reason not
+// to save.
+func TestSaveAsTakesPointsAlong(t *testing.T) {
+	for _, there := range []bool{true, false} {
+		b := newBench(t, quick, Options{})
+		path := b.path(t)
+		text := strings.Replace(readFile(t, path), "    P1:\n", "    P1:\n      points: bench/pump.csv\n", 1)
+		check(t, os.WriteFile(path, []byte(text), 0o644))
+		csv := filepath.Join(b.dir, "bench", "pump.csv")
+		check(t, os.Mkdir(filepath.Dir(csv), 0o755))
+		if there {
+			check(t, os.WriteFile(csv, []byte("n [1/min]; dp [bar]; q [L/min]; T [N m]\n1000;100;40;70\n1500;200;60;140\n"), 0o644))
+		}
+		_, err := b.Open(path)
+		check(t, err)
+		if b.File().Circuits[0].Block("P1").Word("points") == "" {
+			t.Fatal("the block names no points")
+		}
+		to := t.TempDir()
+		check(t, b.SaveAs(filepath.Join(to, "copy.yaml")))
+		_, err = os.Stat(filepath.Join(to, "bench", "pump.csv"))
+		if (err == nil) != there {
+			t.Errorf("points there: %v, copied: %v", there, err == nil)
+		}
+	}
+}
+
 func TestSaveAsRecordingRefused(t *testing.T) {
 	b, path := recorded(t)
 	csv := filepath.Join(b.dir, "logs", "day.csv")

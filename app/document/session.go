@@ -10,6 +10,8 @@ import (
 	"os"
 	"path/filepath"
 	"strings"
+
+	"barlitre/audit/whole"
 )
 
 const (
@@ -53,7 +55,7 @@ func newSession(folder string, name func(id string) (string, error), text []byte
 		err = errors.Join(err, s.lock.Sync())
 	}
 	if err == nil {
-		syncFolder(folder)
+		whole.SyncFolder(folder)
 		err = s.write(text)
 	}
 	if err != nil {
@@ -127,7 +129,7 @@ func besideName(path string) (string, error) {
 	return "", fmt.Errorf("%s: too many autosaves lie beside it", path)
 }
 
-func (s *session) write(text []byte) error { return writeWhole(s.autosave, s.autosave+tmpExt, text) }
+func (s *session) write(text []byte) error { return whole.WriteBy(s.autosave+tmpExt, s.autosave, text) }
 
 // drop removes the autosave and its entry. A nil session has neither.
 func (s *session) drop() error {
@@ -136,7 +138,7 @@ func (s *session) drop() error {
 	}
 	var err error
 	if s.autosave != "" {
-		err = errors.Join(removeFile(s.autosave), removeFile(s.autosave+tmpExt))
+		err = errors.Join(whole.Remove(s.autosave), whole.Remove(s.autosave+tmpExt))
 	}
 	if err != nil { // it stays listed, so that it can still be found
 		s.release()
@@ -147,7 +149,7 @@ func (s *session) drop() error {
 	if gone {
 		return nil
 	}
-	return removeFile(s.list) // systems that do not remove open files
+	return whole.Remove(s.list) // systems that do not remove open files
 }
 
 // release ends the hold on a session whose files stay.

@@ -75,12 +75,13 @@ func (d *Document) Resolve() {
 }
 
 // request asks for the present revision to be solved instead of what is being
-// solved now. mu is held.
+// solved now; advice that is being made on the one before is given up. mu is held.
 func (d *Document) request() {
 	d.ticket++
 	d.wanted, d.ready = d.ticket, false
 	d.done, d.total, d.failure = 0, 0, nil
 	d.stop()
+	d.stopAdvice()
 }
 
 // release lets the solver begin, after the edit behind the ticket was told: so no

@@ -54,7 +54,7 @@ func numbered(name string, i int) string {
 }
 
 func (l *ladder) text(name, text string, importance widget.Importance) *widget.Label {
-	t := label(name)
+	t := widgets.Wrapped(name)
 	t.Importance = importance
 	t.SetText(l.ctx.Local(text))
 	return t

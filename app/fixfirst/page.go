@@ -28,22 +28,13 @@ type Page struct {
 
 // New makes the page.
 func New(ctx station.Context) *Page {
-	p := &Page{ctx: ctx, say: label("fixfirst.say"), bar: widgets.Name(widget.NewProgressBar(), "fixfirst.progress"), list: container.NewVBox()}
+	p := &Page{ctx: ctx, say: widgets.Wrapped("fixfirst.say"), bar: widgets.Name(widget.NewProgressBar(), "fixfirst.progress"), list: container.NewVBox()}
 	cancel := widgets.Name(widgets.NewButton("Cancel", func() { ctx.Doc().CancelAdvice() }), "fixfirst.cancel")
 	p.working = container.NewBorder(nil, nil, nil, cancel, p.bar)
 	p.working.Hide()
 	p.scroll = container.NewScroll(widgets.Spaced(container.NewVBox(p.say, p.working, p.list)))
 	p.content = p.scroll
 	return p
-}
-
-func label(name string) *widget.Label {
-	l := widget.NewLabel("")
-	l.Wrapping = fyne.TextWrapWord
-	if name != "" {
-		widgets.Name(l, name)
-	}
-	return l
 }
 
 // Content is the page.
@@ -89,6 +80,7 @@ func (p *Page) progress() {
 // told says why there is nothing, or why it may be old.
 func (p *Page) told(a *document.Advice, current bool) {
 	running, _, _, err := p.ctx.Doc().Advising()
+	running = running || p.ctx.Doc().AdviceFollows()
 	text := ""
 	switch {
 	case p.ctx.Solution() == nil:

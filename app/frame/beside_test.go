@@ -59,7 +59,7 @@ func TestPickedProposal(t *testing.T) {
 	b.drain()
 	b.solved()
 	if b.Beside() != "Pump-controlled" || b.verdictText() != one {
-		t.Errorf("undone, beside stands %s", b.Beside())
+		t.Errorf("undone, beside stands %s, and the verdict is\n%s\nwas\n%s", b.Beside(), b.verdictText(), one)
 	}
 }
 
@@ -104,5 +104,38 @@ func TestSpeedOfTheClock(t *testing.T) {
 	}
 	if b.strip.speed.Options[2] != "0.25\u202f×" || b.player.rate() != 100 {
 		t.Errorf("speeds %v, the last is %g", b.strip.speed.Options, b.player.rate())
+	}
+}
+
+// TestTwoMachinesAsFound: where nothing is proposed, the verdict is of the first circuit and says so.
+func TestTwoMachinesAsFound(t *testing.T) {
+	b := newBench(t)
+	b.Open("")
+	b.solved()
+	if b.ofSeveral() != "" {
+		t.Errorf("one proposal, and the verdict is named %q", b.ofSeveral())
+	}
+	if err := b.doc.Edit("Two machines", func(f *audit.File) error {
+		if err := f.AddCircuit("Other", audit.AsFound); err != nil {
+			return err
+		}
+		return f.DeleteCircuit("Pump-controlled")
+	}); err != nil {
+		t.Fatal(err)
+	}
+	b.drain()
+	b.solved()
+	r := b.Report()
+	if len(r.Decisions) != 0 || len(r.Circuits) != 2 {
+		t.Fatalf("%d decisions on %d circuits", len(r.Decisions), len(r.Circuits))
+	}
+	drawn := ""
+	for _, x := range r.Circuits[0].Year {
+		if x.Name == "drawn a year" {
+			drawn = x.Text
+		}
+	}
+	if got := b.verdictText(); b.ofSeveral() != r.Circuits[0].Name || drawn == "" || !strings.Contains(got, drawn) {
+		t.Errorf("the verdict of %q, which draws %s, is\n%s", b.ofSeveral(), drawn, got)
 	}
 }

@@ -3,11 +3,11 @@ package frame
 import (
 	"fmt"
 	"math"
-	"sort"
 
 	"fyne.io/fyne/v2"
 
 	"barlitre/app/widgets"
+	"barlitre/audit"
 	"barlitre/audit/figures"
 	"barlitre/audit/pen"
 	"barlitre/machines/units"
@@ -151,18 +151,11 @@ func (s *strip) atClock() string {
 	return text
 }
 
-// at interpolates between rows; at a step it takes the row after it.
+// at is the value at a time; at a step that of the row after it.
 func at(t, v []float64, x float64) float64 {
 	n := min(len(t), len(v)) // a faulty duty may have a short track
-	t, v = t[:n], v[:n]
-	i := sort.Search(len(t), func(i int) bool { return t[i] > x })
-	switch {
-	case len(t) == 0:
+	if n == 0 {
 		return math.NaN()
-	case i == 0:
-		return v[0]
-	case i == len(t):
-		return v[len(v)-1]
 	}
-	return v[i-1] + (v[i]-v[i-1])*(x-t[i-1])/(t[i]-t[i-1])
+	return (&audit.Track{T: t[:n], V: v[:n]}).At(x)
 }

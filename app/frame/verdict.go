@@ -2,6 +2,7 @@ package frame
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"fyne.io/fyne/v2"
@@ -64,9 +65,14 @@ func (f *Frame) verdictFields() []verdictField {
 	return out
 }
 
-// ofSeveral names the circuit that the verdict is about, where there are several.
+// ofSeveral names the circuit that the verdict is about, where there are several: that picked beside the one as found; where
+// nothing is proposed for that, as with two machines as found, the first.
 func (f *Frame) ofSeveral() string {
-	if len(f.doc.File().Besides()) < 2 {
+	r := f.Report()
+	switch {
+	case r != nil && len(r.Decisions) == 0 && len(r.Circuits) > 1:
+		return r.Circuits[0].Name
+	case len(f.doc.File().Besides()) < 2:
 		return ""
 	}
 	return f.Beside()
@@ -80,21 +86,21 @@ func (f *Frame) coolerTitle() string {
 	return "Cooler"
 }
 
-// aloneFields are those of a circuit without a proposal.
+// aloneFields are those of a circuit without a proposal: the first.
 func (f *Frame) aloneFields(r *audit.Report) []verdictField {
+	if len(r.Circuits) == 0 {
+		return nil
+	}
 	var out []verdictField
-	for _, c := range r.Circuits {
-		for _, x := range append(append([]audit.Figure(nil), c.Year...), c.Heat...) {
-			switch x.Name {
-			case "drawn a year":
-				out = append(out, verdictField{"energy", "Energy a year", "", x.Text, "", x})
-			case "mean heat to the oil, all running hours":
-				out = append(out, verdictField{"heat", "Heat to the oil", "", x.Text, "", x})
-			case "cooler for it, all running hours":
-				out = append(out, verdictField{"cooler", f.coolerTitle(), "", x.Text, "", x})
-			}
+	for _, x := range slices.Concat(r.Circuits[0].Year, r.Circuits[0].Heat) {
+		switch x.Name {
+		case "drawn a year":
+			out = append(out, verdictField{"energy", "Energy a year", "", x.Text, "", x})
+		case "mean heat to the oil, all running hours":
+			out = append(out, verdictField{"heat", "Heat to the oil", "", x.Text, "", x})
+		case "cooler for it, all running hours":
+			out = append(out, verdictField{"cooler", f.coolerTitle(), "", x.Text, "", x})
 		}
-		break
 	}
 	return out
 }

@@ -73,13 +73,13 @@ func newCurves(ctx station.Context) *curves {
 	c.cooler, rows[0] = c.slider("heat.slider.cooler", "Cooler", 0, 1, 0.001)
 	c.air, rows[1] = c.slider("heat.slider.air", "Air", -25, 25, 0.5)
 	c.tank, rows[2] = c.slider("heat.slider.tank", "Oil in the tank", -2, 2, 0.05)
-	c.note = wrapped("heat.trial")
+	c.note = widgets.Wrapped("heat.trial")
 	c.note.Importance = widget.LowImportance
 	c.take = widgets.Name(widgets.NewButton("Put into the audit", c.put), "heat.trial.put")
 	c.back = widgets.Name(widgets.NewButton("As in the audit", func() { c.reset(); c.follow() }), "heat.trial.back")
 	head := container.NewBorder(nil, nil, widget.NewLabelWithStyle("Oil temperature", fyne.TextAlignLeading, fyne.TextStyle{Bold: true}), c.view)
 	c.body = container.NewVBox(head, c.figure, rows[0], rows[1], rows[2], c.note, container.NewHBox(c.take, c.back))
-	c.empty = wrapped("heat.curves.empty")
+	c.empty = widgets.Wrapped("heat.curves.empty")
 	c.content = container.NewVBox(c.empty, c.body)
 	return c
 }

@@ -68,20 +68,14 @@ func (h *Heat) Help() string {
 		"Cooler request sheet… writes what a maker of coolers asks for, as PDF or, with the ending .csv, as a table. Lines left blank are for whom their note names."
 }
 
-func wrapped(name string) *widget.Label {
-	l := widgets.Name(widget.NewLabel(""), name)
-	l.Wrapping = fyne.TextWrapWord
-	return l
-}
-
 func (h *Heat) build() {
 	h.plot = newPlot(h.ctx)
 	h.table = widgets.NewFigureTable(h.ctx.Palette, h.ctx.Explain, h.ctx.Local)
 	widgets.Name(h.table.Table, "heat.table")
 	h.oil = newTemperature(h.ctx, "Oil temperature", "oil.temperature", "heat.oil")
 	h.air = newTemperature(h.ctx, "Air temperature", "air.temperature", "heat.air")
-	h.empty, h.fault, h.basis = wrapped("heat.empty"), wrapped("heat.fault"), wrapped("heat.basis")
-	h.caution, h.hot = wrapped("heat.caution"), wrapped("heat.hot")
+	h.empty, h.fault, h.basis = widgets.Wrapped("heat.empty"), widgets.Wrapped("heat.fault"), widgets.Wrapped("heat.basis")
+	h.caution, h.hot = widgets.Wrapped("heat.caution"), widgets.Wrapped("heat.hot")
 	h.fault.Importance = widget.DangerImportance
 	h.basis.Importance = widget.LowImportance
 	h.tableOf = container.NewVBox(h.table.Table, h.fault, h.basis)
@@ -89,7 +83,7 @@ func (h *Heat) build() {
 	h.warmth = widgets.NewFigureTable(h.ctx.Palette, h.ctx.Explain, h.ctx.Local)
 	widgets.Name(h.warmth.Table, "heat.warmth")
 	h.request = widgets.Name(widgets.NewTipButton("Cooler request sheet…", "what a maker of coolers asks for, a page for each circuit; with the ending .csv as a table", h.saveRequest), "heat.request")
-	h.missing = wrapped("heat.missing")
+	h.missing = widgets.Wrapped("heat.missing")
 	side := container.NewVBox(
 		widgets.Card("Temperatures", container.NewVBox(h.oil.content, h.air.content, h.caution)),
 		widget.NewSeparator(),

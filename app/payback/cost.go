@@ -38,7 +38,7 @@ func (in *inputs) showCosts(f *audit.File) {
 			in.costs.Add(in.cost[i].content)
 		}
 		if len(proposals) == 0 {
-			none := text("")
+			none := widgets.Wrapped("")
 			none.SetText("The cost of each proposal stands here once there is one; add it under Circuit.")
 			in.costs.Add(none)
 		}

@@ -47,9 +47,9 @@ func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	d := &decision{ctx: ctx}
 	d.title = widget.NewLabelWithStyle("", fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
 	d.title.Wrapping = fyne.TextWrapWord
-	d.verdict, d.warnings = text(numbered("payback.verdict", i)), text(numbered("payback.warnings", i))
-	d.credit = text(numbered("payback.credit", i))
-	d.oil = text(numbered("payback.oil", i))
+	d.verdict, d.warnings = widgets.Wrapped(numbered("payback.verdict", i)), widgets.Wrapped(numbered("payback.warnings", i))
+	d.credit = widgets.Wrapped(numbered("payback.credit", i))
+	d.oil = widgets.Wrapped(numbered("payback.oil", i))
 	d.warnings.Importance = widget.DangerImportance
 	d.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(300, 60), d.draw), numbered("payback.bars", i))
 	d.figure.Tapped = d.tapped
@@ -59,8 +59,8 @@ func newDecision(ctx station.Context, i int, in *container.Scroll) *decision {
 	widgets.Name(d.cost.Table, numbered("payback.range", i))
 	d.table.In(in)
 	d.cost.In(in)
-	d.none = text(numbered("payback.none", i))
-	d.published = text(numbered("payback.published", i))
+	d.none = widgets.Wrapped(numbered("payback.none", i))
+	d.published = widgets.Wrapped(numbered("payback.published", i))
 	d.content = container.NewVBox(d.title, d.verdict, d.credit, d.oil, d.warnings, d.figure, d.table.Table, d.cost.Table, d.none, d.published)
 	return d
 }

@@ -47,7 +47,7 @@ func newInputs(ctx station.Context) *inputs {
 	in.low, in.high = in.field("payback.price.low", in.putPrice(".low")), in.field("payback.price.high", in.putPrice(".high"))
 	in.note = in.field("payback.price.note", in.put("Change the note on the price", "energy.price.note"))
 	in.note.Scroll = fyne.ScrollHorizontalOnly
-	bandNote := text("")
+	bandNote := widgets.Wrapped("")
 	in.low.Note, in.high.Note = bandNote, bandNote
 	in.band = widgets.Row("  lies within", container.NewGridWithColumns(2, in.low, in.high), bandNote)
 	var origins []string
@@ -270,7 +270,7 @@ func (in *inputs) showHours(f *audit.File) {
 			in.duties.Add(widgets.FieldRow(name, field))
 		}
 		if len(names) == 0 {
-			none := text("")
+			none := widgets.Wrapped("")
 			none.SetText("The duties and their hours stand here once there is one; build it under Duty.")
 			in.duties.Add(none)
 		}

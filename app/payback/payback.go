@@ -36,10 +36,10 @@ type Payback struct {
 // New makes the station.
 func New(ctx station.Context) station.Station {
 	p := &Payback{ctx: ctx, inputs: newInputs(ctx), results: container.NewVBox()}
-	p.empty = text("payback.empty")
+	p.empty = widgets.Wrapped("payback.empty")
 	p.alone = widgets.NewFigureTable(ctx.Palette, ctx.Explain, ctx.Local)
 	widgets.Name(p.alone.Table, "payback.year")
-	p.basis, p.left = text("payback.basis"), text("payback.excluded")
+	p.basis, p.left = widgets.Wrapped("payback.basis"), widgets.Wrapped("payback.excluded")
 	p.left.Importance, p.basis.Importance = widget.LowImportance, widget.LowImportance
 	p.below = container.NewVBox(widget.NewSeparator(), widgets.Card("What the figures rest on", p.basis),
 		widgets.Card("What they leave out", p.left))
@@ -51,15 +51,6 @@ func New(ctx station.Context) station.Station {
 	p.pages = newPages(ctx, split, p.saving)
 	p.content = p.pages.content
 	return p
-}
-
-func text(name string) *widget.Label {
-	l := widget.NewLabel("")
-	l.Wrapping = fyne.TextWrapWord
-	if name != "" {
-		widgets.Name(l, name)
-	}
-	return l
 }
 
 // Name is the word on the rail.

@@ -19,6 +19,7 @@ import (
 	"barlitre/app/widgets"
 	"barlitre/audit"
 	"barlitre/audit/pdf"
+	"barlitre/audit/whole"
 )
 
 const saveDirVariable = station.SaveDirVariable
@@ -208,6 +209,6 @@ func (s *saver) ended(what, where string, err error) {
 	case errors.As(err, &part):
 		s.ctx.Fail(fmt.Errorf("save %s to %s: %w; the audit with its results is still open here", what, where, err))
 	default:
-		s.ctx.Fail(fmt.Errorf("save %s to %s: %w; nothing was written there, and the audit with its results is still open here", what, where, plain(err)))
+		s.ctx.Fail(fmt.Errorf("save %s to %s: %w; nothing was written there, and the audit with its results is still open here", what, where, whole.Plain(err)))
 	}
 }

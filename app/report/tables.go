@@ -14,6 +14,7 @@ import (
 	"fyne.io/fyne/v2/storage"
 
 	"barlitre/audit"
+	"barlitre/audit/whole"
 )
 
 // saveCSV asks for a folder and writes the tables of time steps into it.
@@ -96,7 +97,7 @@ func writeTables(ctx context.Context, f *audit.File, folder, base string, progre
 	for i, name := range names {
 		if err := os.Rename(filepath.Join(beside, name), filepath.Join(folder, base+name)); err != nil {
 			if i > 0 {
-				return &partError{fmt.Errorf("%d of %s are in place, %s is not: %w", i, plural(len(names), "table"), base+name, plain(err))}
+				return &partError{fmt.Errorf("%d of %s are in place, %s is not: %w", i, plural(len(names), "table"), base+name, whole.Plain(err))}
 			}
 			return err
 		}
@@ -106,19 +107,6 @@ func writeTables(ctx context.Context, f *audit.File, folder, base string, progre
 
 // partError is of an action of which a part was done.
 type partError struct{ error }
-
-// plain takes names of temporary files out of an error: the sentence around it names the place.
-func plain(err error) error {
-	var at *os.PathError
-	if errors.As(err, &at) {
-		return at.Err
-	}
-	var link *os.LinkError
-	if errors.As(err, &link) {
-		return link.Err
-	}
-	return err
-}
 
 func folderURI(dir string) (fyne.ListableURI, error) {
 	return storage.ListerForURI(storage.NewFileURI(dir))

@@ -216,10 +216,14 @@ func (f *findings) draw(p pen.Pen, w, _ float64) []widgets.Part {
 	return f.places
 }
 
-// where is the line above a finding: level, circuit, block, time.
+// where is the line above a finding: level, block, circuit, duties, time.
 func (f *findings) where(g circuit.Finding) string {
 	text := levelWords[g.Level]
-	for _, s := range []string{g.Block, g.Circuit} {
+	duties := ""
+	if len(f.s.ctx.Doc().File().Duties) > 1 {
+		duties = g.Duties()
+	}
+	for _, s := range []string{g.Block, g.Circuit, duties} {
 		if s != "" {
 			text += " · " + s
 		}

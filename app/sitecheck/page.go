@@ -31,21 +31,12 @@ type Page struct {
 
 // New makes the page.
 func New(ctx station.Context) *Page {
-	p := &Page{ctx: ctx, say: label("sitecheck.say"), verdict: label("sitecheck.verdict"), bar: widgets.Name(widget.NewProgressBar(), "sitecheck.progress"), list: container.NewVBox()}
+	p := &Page{ctx: ctx, say: widgets.Wrapped("sitecheck.say"), verdict: widgets.Wrapped("sitecheck.verdict"), bar: widgets.Name(widget.NewProgressBar(), "sitecheck.progress"), list: container.NewVBox()}
 	p.verdict.TextStyle.Bold = true
 	p.circuit = widgets.Name(widgets.NewSelect(nil, func(string) { p.Changed(station.Advice) }), "sitecheck.circuit")
 	p.circuit.Hide()
 	p.content = container.NewScroll(widgets.Spaced(container.NewVBox(p.say, p.bar, p.circuit, p.list)))
 	return p
-}
-
-func label(name string) *widget.Label {
-	l := widget.NewLabel("")
-	l.Wrapping = fyne.TextWrapWord
-	if name != "" {
-		widgets.Name(l, name)
-	}
-	return l
 }
 
 // Content is the page.
@@ -77,7 +68,7 @@ func (p *Page) Changed(w station.What) {
 	switch {
 	case plan == nil && err != nil:
 		text = "The plan could not be made: " + err.Error()
-	case plan == nil && running:
+	case plan == nil && (running || p.ctx.Solution() != nil && doc.AdviceFollows()):
 		text = "Making the plan: the circuit is balanced with one fault after the other, to say what each looks like…"
 	case plan == nil:
 		text = "The test plan stands here as soon as the circuit as found can be solved over a duty that has hours a year."
@@ -130,7 +121,7 @@ func (p *Page) show(plan *sitecheck.Plan) {
 		return
 	}
 	title := widget.NewLabelWithStyle("Site check: "+plan.Circuit, fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
-	intro, states, caution := label(""), label(""), label("sitecheck.caution")
+	intro, states, caution := widgets.Wrapped(""), widgets.Wrapped(""), widgets.Wrapped("sitecheck.caution")
 	intro.SetText(p.ctx.Local(sitecheck.Intro + " " + plan.Basis()))
 	states.SetText("States: " + sitecheck.StateText())
 	states.Importance = widget.LowImportance
@@ -164,7 +155,7 @@ func (p *Page) point(pt sitecheck.Point) fyne.CanvasObject {
 		p.fields = append(p.fields, r)
 		row.Add(r.content)
 	}
-	how, caution := label(""), label("")
+	how, caution := widgets.Wrapped(""), widgets.Wrapped("")
 	how.SetText(p.ctx.Local(strings.ToUpper(pt.Place[:1]) + pt.Place[1:] + ". Gauge: " + pt.Gauge + "; " + pt.Rate + ". Bad looks like: " + p.plan.Bad(pt) + "."))
 	how.Importance = widget.LowImportance
 	caution.SetText("▲ " + pt.Caution)

@@ -1,29 +1,15 @@
 package station
 
 import (
-	"errors"
 	"fmt"
 	"io"
-	"os"
-	"path/filepath"
+
+	"barlitre/audit/whole"
 )
 
 // WriteWhole writes a file so that it is there whole, or as it was.
-func WriteWhole(path string, write func(io.Writer) error) (err error) {
-	tmp, err := os.CreateTemp(filepath.Dir(path), ".barlitre-*")
-	if err != nil {
-		return err
-	}
-	defer func() {
-		if err != nil {
-			os.Remove(tmp.Name())
-		}
-	}()
-	err = errors.Join(Guarded(func() error { return write(tmp) }), tmp.Chmod(0o644), tmp.Sync(), tmp.Close())
-	if err != nil {
-		return err
-	}
-	return os.Rename(tmp.Name(), path)
+func WriteWhole(path string, write func(io.Writer) error) error {
+	return whole.Write(path, func(w io.Writer) error { return Guarded(func() error { return write(w) }) })
 }
 
 // Guarded turns an error of the program itself into one that is said.

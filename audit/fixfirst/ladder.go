@@ -203,12 +203,20 @@ func (l *Ladder) inOrder(ctx context.Context, f *audit.File, last outcome, cache
 		if x.Unpriced != "" {
 			continue
 		}
-		g, edits, o, why, err := cache.choose(ctx, f, last, x.Finding, false)
+		var g *audit.File
+		var edits Cure
+		var o outcome
+		err := guarded(x, func() (err error) {
+			var why string
+			if g, edits, o, why, err = cache.choose(ctx, f, last, x.Finding, false); err == nil && why != "" {
+				x.Unpriced = "after those above it: " + why
+			}
+			return err
+		})
 		if err != nil {
 			return last, err
 		}
-		if why != "" {
-			x.Unpriced = "after those above it: " + why
+		if x.Unpriced != "" {
 			continue
 		}
 		x.Taken, x.InOrder, x.Before, x.After = edits, less(last, o), yearOf(last), yearOf(o)

@@ -102,7 +102,8 @@ func TestOrder(t *testing.T) {
 	}
 }
 
-// What was solved once is not solved again: a second climb over the same text takes no time worth naming, and says the same.
+// What was solved once is not solved again: a second climb over the same text, or with a reading typed in,
+// takes no time worth naming, and says the same.
 func TestCache(t *testing.T) {
 	cache := &fixfirst.Cache{}
 	s, l := whole(t, cache)
@@ -114,6 +115,14 @@ func TestCache(t *testing.T) {
 	}
 	if again.Total() != l.Total() || len(again.Steps) != len(l.Steps) {
 		t.Errorf("%+v, before %+v", again.Total(), l.Total())
+	}
+	read := *s
+	read.File = s.File.Clone()
+	if err := read.File.SetReading("idling", "M1.power", "5 kW"); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := fixfirst.Climb(ctx, &read, s.Circuits[0], fixfirst.Options{Cache: cache}); err != nil {
+		t.Error("a reading typed has everything solved again")
 	}
 	if _, err := fixfirst.Climb(ctx, s, s.Circuits[0], fixfirst.Options{}); err == nil {
 		t.Error("a cancelled climb without cache gave an answer")
@@ -215,7 +224,7 @@ func TestCureLeavesTheMachineWorking(t *testing.T) {
 
 // A worn pump that cannot reach the speed saves nothing that could be compared: the page says first that motion is missing.
 func TestMissingMotionIsSaidFirst(t *testing.T) {
-	f := asFound(twins["press, pump worn"].file(t, sources(t)))
+	f := twins["press, pump worn"].file(t, sources(t))
 	if err := f.Set("As found/P1.wear", "12"); err != nil {
 		t.Fatal(err)
 	}
@@ -234,8 +243,16 @@ func TestMissingMotionIsSaidFirst(t *testing.T) {
 		t.Fatal(err)
 	}
 	p := l[0].Page(units.Metric)
-	if !strings.HasPrefix(p.Verdict, `The circuit "As found" as found does not do its work`) || strings.Contains(p.Verdict, "less,") {
+	if !strings.HasPrefix(p.Verdict, `The circuit "As found" as it stands does not do its work`) || strings.Contains(p.Verdict, "less,") {
 		t.Errorf("verdict %q", p.Verdict)
+	}
+	if len(p.Splits) != 1 {
+		t.Errorf("%d proposals are set beside it", len(p.Splits))
+	}
+	for _, x := range p.Splits {
+		if !strings.HasPrefix(x.Text, x.Proposal+" cannot be compared with As found as it stands") {
+			t.Errorf("split %q", x.Text)
+		}
 	}
 	if text := p.Rows[len(p.Rows)-1].Cells[3].Text; text != "not comparable" {
 		t.Errorf("all, in order: %q", text)

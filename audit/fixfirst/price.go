@@ -2,7 +2,6 @@ package fixfirst
 
 import (
 	"context"
-	"crypto/sha256"
 	"fmt"
 	"math"
 	"sync"
@@ -58,7 +57,7 @@ func outcomeOf(run *audit.CircuitRun) outcome {
 	return o
 }
 
-// Cache keeps the years of circuits by the text of their file, so that what was solved once is not solved again. The
+// Cache keeps the years of circuits by the fingerprint of their file, so that what was solved once is not solved again. The
 // zero value is good, for any number of goroutines.
 type Cache struct {
 	mu    sync.Mutex
@@ -92,18 +91,9 @@ func (c *Cache) put(k [32]byte, o outcome) {
 	}
 }
 
-// keyOf is the print of a file, of the recordings it names, and of the circuit that is asked for.
-func keyOf(f *audit.File, name string) [32]byte {
-	text := append(f.Bytes(), 0)
-	for _, s := range f.Sources {
-		text = append(append(text, s.File...), s.SHA256...)
-	}
-	return sha256.Sum256(append(append(text, 0), name...))
-}
-
 // solve returns the year of one circuit of a file; the error is that of the context.
 func (c *Cache) solve(ctx context.Context, f *audit.File, name string) (outcome, error) {
-	k := keyOf(f, name)
+	k := f.Fingerprint(name)
 	if o, ok := c.get(k); ok {
 		return o, nil
 	}

@@ -29,7 +29,7 @@ func unloadsAtPressure(p *plant) []*Finding {
 		f.Duty, f.Time = at.Duty, at.T
 		spill := 0.0
 		for _, rv := range p.ReliefsOf(pump) {
-			l := p.Lost("relief spill", rv.ID)
+			l := p.Lost("", rv.ID) // spilled, or let round while vented
 			spill += l.Idle + l.Holding
 		}
 		f.Evidence = []Quantity{

@@ -136,7 +136,7 @@ func (w words) verdict(l *Ladder) string {
 		faults += fmt.Sprintf(", and %d ways of running it that cost money", habits)
 	}
 	if l.Lacks > leastLack {
-		return fmt.Sprintf("The circuit \"%s\" as found does not do its work: %s of motion a cycle are missing. %s. What the cures save cannot be compared, for the machine as found delivers less; put right in the order below it does that work and draws %s a year. That is the machine a proposal has to beat.",
+		return fmt.Sprintf("The circuit \"%s\" as it stands does not do its work: %s of motion a cycle are missing. %s. What the cures save cannot be compared, for the machine delivers less as it stands; put right in the order below it does that work and draws %s a year. That is the machine a proposal has to beat.",
 			l.Circuit, seconds(l.Lacks), faults, w.energy(l.Cured.Drawn))
 	}
 	share := ""
@@ -231,7 +231,7 @@ func (w words) split(l *Ladder, s Split) SplitPage {
 		page.Text = fmt.Sprintf("Against %s with its faults cured, %s saves %s.", l.Circuit, s.Proposal, w.both(s.Architecture))
 	}
 	if l.Lacks > leastLack { // no split of a saving against a machine that does less
-		page.Text = fmt.Sprintf("Against %s as found it cannot be compared: that delivers less (%s a cycle missing). Against %s with its faults cured, %s saves %s.", l.Circuit, seconds(l.Lacks), l.Circuit, s.Proposal, w.both(s.Architecture))
+		page.Text = fmt.Sprintf("%s cannot be compared with %s as it stands, which delivers less (%s a cycle missing). Against that with its faults cured it saves %s.", s.Proposal, l.Circuit, seconds(l.Lacks), w.both(s.Architecture))
 		page.Rows = []Row{page.Rows[len(page.Rows)-2]}
 		page.Rows[0].Cells[len(page.Rows[0].Cells)-1].Text = "–"
 	}

@@ -241,48 +241,63 @@ func (p *Plant) Lowest(name string, w When) Moment {
 	return m
 }
 
-// Mean is the mean of a signal over the time that counts, of all duties by their hours, and that time as a share.
-func (p *Plant) Mean(name string, w When) (mean, share float64) {
-	var sum, time, all float64
+// Of is what is read of a duty at the instants of its course; nil where the duty has no such value.
+type Of func(d *audit.DutyRun, c *Course) func(i int) float64
+
+// Signal reads a signal by its name.
+func Signal(name string) Of {
+	return func(d *audit.DutyRun, c *Course) func(i int) float64 {
+		k := Track(d, name)
+		if k == nil {
+			return nil
+		}
+		return func(i int) float64 { return ValueOf(k, c, i) }
+	}
+}
+
+// Intervals hands over the time between every two instants of all duties that run in the year: the mean of a value over it, how
+// long it is in the year [s], and whether both its ends count. Where the value is not a number nothing is handed over.
+func (p *Plant) Intervals(w When, of Of, take func(mean, dt float64, counts bool)) {
 	for _, d := range p.Run.Duties {
-		k, s := Track(d, name), p.Course(d)
-		if k == nil || len(s.T) < 2 || d.Duty.Hours <= 0 {
+		if d.Plot == nil || d.Duty.Hours <= 0 {
 			continue
 		}
-		n := d.Duty.Hours / (s.T[len(s.T)-1] - s.T[0])
-		for i := 1; i < len(s.T); i++ {
-			dt := n * (s.T[i] - s.T[i-1])
-			all += dt
-			if w(s.State[i]) && w(s.State[i-1]) {
-				sum += dt * (ValueOf(k, s, i) + ValueOf(k, s, i-1)) / 2
-				time += dt
+		c := p.Course(d)
+		value := of(d, c)
+		if value == nil || len(c.T) < 2 {
+			continue
+		}
+		n := d.Duty.Hours / (c.T[len(c.T)-1] - c.T[0])
+		before := value(0)
+		for i := 1; i < len(c.T); i++ {
+			now := value(i)
+			if mean := (before + now) / 2; !math.IsNaN(mean) {
+				take(mean, n*(c.T[i]-c.T[i-1]), w(c.State[i]) && w(c.State[i-1]))
 			}
+			before = now
 		}
 	}
-	if time == 0 {
-		return math.NaN(), 0
-	}
-	return sum / time, time / all
+}
+
+// Mean is the mean of a signal over the time that counts, of all duties by their hours, and that time as a share.
+func (p *Plant) Mean(name string, w When) (mean, share float64) {
+	return p.above(name, w, math.Inf(-1))
 }
 
 // Above is the mean of a signal over the time in which nothing moves and it stands above a limit, of all duties by their
 // hours, and that time as a share of all.
 func (p *Plant) Above(name string, limit float64) (mean, share float64) {
+	return p.above(name, Standing, limit)
+}
+
+func (p *Plant) above(name string, w When, limit float64) (mean, share float64) {
 	var sum, time, all float64
-	for _, d := range p.Run.Duties {
-		k, s := Track(d, name), p.Course(d)
-		if k == nil || len(s.T) < 2 || d.Duty.Hours <= 0 {
-			continue
+	p.Intervals(w, Signal(name), func(v, dt float64, counts bool) {
+		all += dt
+		if counts && v > limit {
+			sum, time = sum+dt*v, time+dt
 		}
-		n := d.Duty.Hours / (s.T[len(s.T)-1] - s.T[0])
-		for i := 1; i < len(s.T); i++ {
-			dt, m := n*(s.T[i]-s.T[i-1]), (ValueOf(k, s, i)+ValueOf(k, s, i-1))/2
-			all += dt
-			if Standing(s.State[i]) && Standing(s.State[i-1]) && m > limit {
-				sum, time = sum+dt*m, time+dt
-			}
-		}
-	}
+	})
 	if time == 0 {
 		return math.NaN(), 0
 	}

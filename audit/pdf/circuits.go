@@ -116,7 +116,11 @@ func (l *layout) drawnNote(at instant, d drawn) string {
 	if power < 0 {
 		what, power = "Returns", -power
 	}
-	return fmt.Sprintf("%s %s at this instant; turns %s into heat over the cycle.", what, in(power, units.Power), in(heat, units.Energy))
+	text := fmt.Sprintf("%s %s at this instant; its blocks turn %s into heat over the cycle", what, in(power, units.Power), in(heat, units.Energy))
+	if fan := d.run.Balance.CoolingDrawn().Total(); fan > 0 {
+		text += ", fan and pumps of the cooling " + in(fan, units.Energy) + " besides"
+	}
+	return text + "."
 }
 
 // fitDrawings chooses one scale for all circuits: the largest at which two share a page,

@@ -169,8 +169,8 @@ func (l *layout) beforeAfter(d *audit.Decision) {
 		t.rows = append(t.rows, row{cells: []string{r.Name, r.Before.Text, r.After.Text, r.Change.Text}})
 	}
 	var notes []string
-	if known(l.s.Oil) && known(l.s.Air) {
-		notes = append(notes, fmt.Sprintf("Coolers for oil entering at %s and air entering at %s, the same in both circuits.", l.degrees(l.s.Oil), l.degrees(l.s.Air)))
+	if d.Cooler != "" {
+		notes = append(notes, d.Cooler)
 	}
 	if len(d.Shortfalls.Rows) == 0 {
 		notes = append(notes, d.Shortfalls.Note)

@@ -33,7 +33,7 @@ func (l *layout) findings() {
 
 func (l *layout) where(f circuit.Finding) string {
 	var parts []string
-	for _, p := range []string{f.Circuit, f.Duty, f.Block} {
+	for _, p := range []string{f.Circuit, f.Duties(), f.Block} {
 		if p != "" {
 			parts = append(parts, p)
 		}

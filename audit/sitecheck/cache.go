@@ -1,15 +1,8 @@
 package sitecheck
 
-import (
-	"crypto/sha256"
-	"fmt"
-	"sync"
+import "sync"
 
-	"barlitre/audit"
-	"barlitre/machines/units"
-)
-
-// Cache keeps plans by the text of their file, readings left out: typing one solves nothing again. The zero value is
+// Cache keeps plans by the fingerprint of their file: typing a reading solves nothing again. The zero value is
 // good, nil keeps nothing.
 type Cache struct {
 	mu    sync.Mutex
@@ -46,22 +39,4 @@ func (c *Cache) put(k [32]byte, p *Plan) {
 		delete(c.plans, c.order[0])
 		c.order = c.order[1:]
 	}
-}
-
-// keyOf is the print of a file without its readings.
-func keyOf(f *audit.File, name string, system units.System) [32]byte {
-	g := f.Clone()
-	for _, r := range f.Readings {
-		if err := g.SetReading(r.State, r.Point, ""); err != nil {
-			break // it stays in the print
-		}
-	}
-	text := g.Bytes()
-	if len(f.Readings) == 0 {
-		text = append(text, "site_check: {}\n"...)
-	}
-	for _, s := range f.Sources {
-		text = append(append(text, s.File...), s.SHA256...)
-	}
-	return sha256.Sum256(append(text, fmt.Sprint("\x00", name, system)...))
 }

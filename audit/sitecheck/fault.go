@@ -39,7 +39,7 @@ func faults(p *look.Plant) []*Fault {
 			ps := look.Value(b, "set_pressure")
 			for _, rv := range p.ReliefsOf(b) {
 				key := map[bool]string{true: "set", false: "crack"}[hasSet(rv)]
-				add(at, fmt.Sprintf("%s set below the compensator of %s", rv.ID, b.ID), "Compare both settings with the name plate; feel the outlet of "+rv.ID+".", on(rv, key, bars(0.88*ps)), on(rv, key, bars(0.95*ps)), on(rv, key, bars(0.75*ps)))
+				add(at, fmt.Sprintf("%s set below the compensator of %s", rv.ID, b.ID), "Compare both settings with the name plate; measure the pipe at "+rv.ID+".T with an infrared or contact thermometer, and do not touch it.", on(rv, key, bars(0.88*ps)), on(rv, key, bars(0.95*ps)), on(rv, key, bars(0.75*ps)))
 			}
 			add(at, "compensator of "+b.ID+" turned up", "Compare its setting with the name plate.", on(b, "set_pressure", bars(1.08*ps)))
 		case "load_sensing":

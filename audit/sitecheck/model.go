@@ -62,32 +62,9 @@ func valueOf(p *look.Plant, pt Point, s State) Value {
 		}
 		return Value{}
 	}
-	var of func(d *audit.DutyRun, c *look.Course, i int) float64
+	of := pt.read
 	if pt.feed {
-		of = func(d *audit.DutyRun, c *look.Course, i int) float64 {
-			sum, ok := 0.0, false
-			for k, ch := range d.Plot.Channels {
-				if ch.Block == pt.Block && ch.Kind == "supply" {
-					sum, ok = sum+look.ValueOf(&d.Plot.Powers[k], c, i), true
-				}
-			}
-			if !ok {
-				return math.NaN()
-			}
-			return sum
-		}
-	} else {
-		of = func(d *audit.DutyRun, c *look.Course, i int) float64 {
-			k := look.Track(d, pt.signal)
-			if k == nil {
-				return math.NaN()
-			}
-			v := look.ValueOf(k, c, i)
-			if n := look.Track(d, pt.minus); n != nil {
-				v -= look.ValueOf(n, c, i)
-			}
-			return pt.sign * v
-		}
+		of = pt.fed
 	}
 	v := mean(p, s.when, of)
 	if pt.feed && len(p.Blocks("converter", "electric_motor", "engine")) == 1 && !math.IsNaN(v.Mean) {
@@ -113,31 +90,49 @@ func yearMean(p *look.Plant, state string) float64 {
 // states is not a reading.
 const beyond = 0.03
 
-// mean is the mean of a function over the time in a state, of all duties by their hours, and the range it keeps to.
-func mean(p *look.Plant, w look.When, of func(d *audit.DutyRun, c *look.Course, i int) float64) Value {
+// read is the signal of a point, less the one that is to be taken off.
+func (pt *Point) read(d *audit.DutyRun, c *look.Course) func(i int) float64 {
+	value, less := look.Signal(pt.signal)(d, c), look.Signal(pt.minus)(d, c)
+	switch {
+	case value == nil:
+		return nil
+	case less == nil:
+		return func(i int) float64 { return pt.sign * value(i) }
+	}
+	return func(i int) float64 { return pt.sign * (value(i) - less(i)) }
+}
+
+// fed is the power that the drive at a point draws from its supply.
+func (pt *Point) fed(d *audit.DutyRun, c *look.Course) func(i int) float64 {
+	var feeds []*audit.Track
+	for k, ch := range d.Plot.Channels {
+		if ch.Block == pt.Block && ch.Kind == "supply" {
+			feeds = append(feeds, &d.Plot.Powers[k])
+		}
+	}
+	if feeds == nil {
+		return nil
+	}
+	return func(i int) float64 {
+		sum := 0.0
+		for _, k := range feeds {
+			sum += look.ValueOf(k, c, i)
+		}
+		return sum
+	}
+}
+
+// mean is the mean of a value over the time in a state, of all duties by their hours, and the range it keeps to.
+func mean(p *look.Plant, w look.When, of look.Of) Value {
 	type piece struct{ v, dt float64 }
 	var pieces []piece
 	sum, time := 0.0, 0.0
-	for _, d := range p.Run.Duties {
-		if d.Plot == nil || d.Duty.Hours <= 0 {
-			continue
+	p.Intervals(w, of, func(v, dt float64, counts bool) {
+		if counts && dt > 0 {
+			pieces = append(pieces, piece{v, dt})
+			sum, time = sum+dt*v, time+dt
 		}
-		c := p.Course(d)
-		if len(c.T) < 2 {
-			continue
-		}
-		n := d.Duty.Hours / (c.T[len(c.T)-1] - c.T[0])
-		for i := 1; i < len(c.T); i++ {
-			if !w(c.State[i]) || !w(c.State[i-1]) {
-				continue
-			}
-			a, b := of(d, c, i-1), of(d, c, i)
-			if dt := n * (c.T[i] - c.T[i-1]); dt > 0 && !math.IsNaN(a+b) {
-				pieces = append(pieces, piece{(a + b) / 2, dt})
-				sum, time = sum+dt*(a+b)/2, time+dt
-			}
-		}
-	}
+	})
 	if time == 0 {
 		return none
 	}

@@ -37,7 +37,7 @@ func NewPlan(ctx context.Context, s *audit.Solution, run *audit.CircuitRun, opt 
 	if run.Year == nil || !run.Year.Complete || len(run.Year.Duties) == 0 {
 		return nil, nil
 	}
-	key := keyOf(s.File, run.Circuit.Name, opt.System)
+	key := s.File.Fingerprint(run.Circuit.Name, opt.System)
 	if p := opt.Cache.get(key); p != nil {
 		return p, nil
 	}

@@ -8,7 +8,6 @@ func (p Pt) sub(q Pt) Pt          { return Pt{p.X - q.X, p.Y - q.Y} }
 func (p Pt) scale(f float64) Pt   { return Pt{p.X * f, p.Y * f} }
 func (p Pt) dot(q Pt) float64     { return p.X*q.X + p.Y*q.Y }
 func lerp(p, q Pt, f float64) Pt  { return p.add(q.sub(p).scale(f)) }
-func (b Box) center() Pt          { return lerp(b.Min, b.Max, 0.5) }
 func (b Box) grown(m float64) Box { return Box{b.Min.sub(Pt{m, m}), b.Max.add(Pt{m, m})} }
 func (b Box) moved(d Pt) Box      { return Box{b.Min.add(d), b.Max.add(d)} }
 func (b Box) overlaps(c Box) bool {

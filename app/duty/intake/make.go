@@ -13,6 +13,7 @@ import (
 	"strings"
 
 	"barlitre/audit"
+	"barlitre/audit/whole"
 	"barlitre/circuit/logged"
 	"barlitre/machines/units"
 )
@@ -91,7 +92,7 @@ func copied(ctx context.Context, from, dir, sum string, tell func(done int64)) (
 			break
 		}
 		if err != nil {
-			return "", fmt.Errorf("%s cannot be read: %w", name, plain(err))
+			return "", fmt.Errorf("%s cannot be read: %w", name, whole.Plain(err))
 		}
 		if there == sum {
 			return name, nil
@@ -99,13 +100,13 @@ func copied(ctx context.Context, from, dir, sum string, tell func(done int64)) (
 	}
 	in, err := os.Open(from)
 	if err != nil {
-		return "", fmt.Errorf("%s cannot be read: %w", filepath.Base(from), plain(err))
+		return "", fmt.Errorf("%s cannot be read: %w", filepath.Base(from), whole.Plain(err))
 	}
 	defer in.Close()
 	target := filepath.Join(dir, name)
 	out, err := os.OpenFile(target, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o644)
 	if err != nil {
-		return "", fmt.Errorf("%s cannot be put beside the audit: %w", name, plain(err))
+		return "", fmt.Errorf("%s cannot be put beside the audit: %w", name, whole.Plain(err))
 	}
 	hash := sha256.New()
 	_, err = io.Copy(io.MultiWriter(out, hash), &watched{ctx: ctx, in: in, tell: tell})
@@ -114,7 +115,7 @@ func copied(ctx context.Context, from, dir, sum string, tell func(done int64)) (
 		err = errors.New("it was changed since it was read; open it again")
 	}
 	if err != nil {
-		return "", errors.Join(fmt.Errorf("%s cannot be put beside the audit: %w", name, plain(err)), os.Remove(target))
+		return "", errors.Join(fmt.Errorf("%s cannot be put beside the audit: %w", name, whole.Plain(err)), os.Remove(target))
 	}
 	return name, nil
 }

@@ -17,6 +17,7 @@ import (
 	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
+	"barlitre/audit/whole"
 	"barlitre/circuit/duty"
 	"barlitre/circuit/logged"
 	"barlitre/circuit/recording/logger"
@@ -153,7 +154,7 @@ func (p *Page) Reopen(i int) error {
 	path := filepath.Join(filepath.Dir(p.ctx.Doc().Path()), filepath.FromSlash(im.File))
 	file, err := logger.Open(path)
 	if err != nil {
-		return fmt.Errorf("%s cannot be opened: %w; put it back beside the audit file", im.File, plain(err))
+		return fmt.Errorf("%s cannot be opened: %w; put it back beside the audit file", im.File, whole.Plain(err))
 	}
 	p.begin(path, file)
 	p.recipe, p.again, p.part, p.tracks = im.Recipe, f.Duties[i].Name, im.Part, im.TracksOf()

@@ -2,8 +2,6 @@ package intake
 
 import (
 	"context"
-	"errors"
-	"io/fs"
 	"slices"
 	"strings"
 	"time"
@@ -11,6 +9,7 @@ import (
 	"fyne.io/fyne/v2"
 
 	"barlitre/audit"
+	"barlitre/audit/whole"
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/circuit/logged"
@@ -109,7 +108,7 @@ func (p *Page) read() {
 
 func (p *Page) wasRead(rec *logger.Recording, err error) {
 	if err != nil {
-		p.job.failed = plain(err).Error()
+		p.job.failed = whole.Plain(err).Error()
 		p.refresh()
 		return
 	}
@@ -296,14 +295,6 @@ func faultOf(track string, err error) string {
 		}
 	}
 	return text
-}
-
-// plain takes the path out of an error of the file system.
-func plain(err error) error {
-	if e := (*fs.PathError)(nil); errors.As(err, &e) {
-		return e.Err
-	}
-	return err
 }
 
 // inUnit turns values for a plot.
