@@ -276,7 +276,8 @@ type File struct {
 	data   []byte
 	root   *yaml.Node // the top mapping, or nil
 	open   Open
-	tables map[string]*recorded
+	tables map[string]*recorded // what was read of recordings, by file and recipe
+	used   map[string]bool      // which of them this text needs
 	how    Importing
 	found  []circuit.Finding
 }
@@ -417,7 +418,7 @@ func ParseWith(data []byte, open Open, path string, how Importing) (*File, []cir
 	if len(faults) > 0 {
 		return nil, faults
 	}
-	return parseTree(root, data, open, path, map[string]*recorded{}, how)
+	return (&File{Path: path, open: open}).parseTree(root, data, how)
 }
 
 // Circuit returns a circuit by name, or nil.

@@ -195,7 +195,7 @@ func (f *File) change(what string, splices []splice, holds func(*File) bool) err
 
 // take is change for a draft.
 func (f *File) take(what string, d *draft, holds func(*File) bool) error {
-	g, found := parseTree(d.root, d.src.data, f.open, f.Path, f.tables, Importing{})
+	g, found := f.parseTree(d.root, d.src.data, Importing{})
 	if g == nil {
 		return fmt.Errorf("%s: %w", what, errLayout)
 	}
@@ -230,8 +230,14 @@ func withoutLines(text string) string { return lineNumbers.ReplaceAllString(text
 
 // Replace takes another text for the whole file, as undo does; recordings are not read again. When it cannot be
 // read as an audit file nothing is changed; the findings say why.
-func (f *File) Replace(data []byte) []circuit.Finding {
-	g, found := parse(slices.Clone(data), f.open, f.Path, f.tables)
+func (f *File) Replace(data []byte) []circuit.Finding { return f.ReplaceWith(data, Importing{}) }
+
+// ReplaceWith is Replace for a text whose recordings may have to be read after all. When that is cancelled nothing is changed.
+func (f *File) ReplaceWith(data []byte, how Importing) []circuit.Finding {
+	g, found := f.parse(slices.Clone(data), how)
+	if how.Context != nil && how.Context.Err() != nil {
+		return found
+	}
 	if g != nil {
 		*f = *g
 	}

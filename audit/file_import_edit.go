@@ -1,6 +1,7 @@
 package audit
 
 import (
+	"errors"
 	"fmt"
 	"maps"
 	"slices"
@@ -18,6 +19,7 @@ type Setup struct {
 	File, SHA256 string   // beside the audit file, with forward slashes; of the file as it was looked at
 	More         []string // files that go on where File ends, in their order
 	Recipe       logger.Recipe
+	Also         []Also                       // recordings of other loggers: Files, SHA256, Recipe and Clock of each
 	Columns      map[string]string            // by track, such as X1.pressure: the channel
 	Derived      map[string]map[string]string // by track: law and what it needs, as in files
 	Part         logged.Part                  // of the recording, that makes the duty; the zero Part is all of it
@@ -41,6 +43,13 @@ func (s Setup) keys() ([]string, error) {
 		return nil, err
 	}
 	out = append(out, "import: "+recipe)
+	if len(s.Also) > 0 {
+		text, err := alsoText(s.Also)
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, "also: "+text)
+	}
 	if len(s.Columns) > 0 {
 		text, err := onOneLine(s.Columns)
 		if err != nil {
@@ -62,6 +71,37 @@ func (s Setup) keys() ([]string, error) {
 	return out, nil
 }
 
+// alsoText writes recordings of other loggers on one line.
+func alsoText(list []Also) (string, error) {
+	var out []string
+	add := func(key string, x any) error {
+		text, err := onOneLine(x)
+		out[len(out)-1] += ", " + key + ": " + text
+		return err
+	}
+	for _, a := range list {
+		out = append(out, "{file: "+encode(a.Files[0], false))
+		var errs []error
+		if len(a.Files) > 1 {
+			out[len(out)-1] = "{"
+			errs = append(errs, add("file", a.Files))
+			out[len(out)-1] = strings.Replace(out[len(out)-1], "{, ", "{", 1)
+		}
+		if a.SHA256 != "" {
+			out[len(out)-1] += ", sha256: " + encode(a.SHA256, false)
+		}
+		errs = append(errs, add("import", a.Recipe))
+		for key, x := range a.Clock.fields() { // one at most
+			errs = append(errs, add(key, x))
+		}
+		if err := errors.Join(errs...); err != nil {
+			return "", err
+		}
+		out[len(out)-1] += "}"
+	}
+	return "[" + strings.Join(out, ", ") + "]", nil
+}
+
 // Text is what stands in a duty of an audit file, line by line, to be copied there by hand.
 func (s Setup) Text() (string, error) {
 	keys, err := s.keys()
@@ -76,7 +116,7 @@ func onOneLine(x any) (string, error) {
 	}
 	n.Style = yaml.FlowStyle
 	text, err := yaml.Marshal(&n)
-	return strings.Join(strings.Fields(string(text)), " "), err
+	return strings.TrimSpace(string(text)), err // which is on one line, with the blanks that names have
 }
 
 // ImportDuty adds a duty that is taken from a recording; it does not repeat, for a recording
@@ -108,8 +148,9 @@ func (f *File) SetImport(name string, s Setup) error {
 		return fmt.Errorf("duty %q: %w", name, err)
 	}
 	d := f.draft()
-	for _, key := range []string{"points", "file", "sha256", "import", "columns", "derived", "part"} {
-		if child(d.duty(i), key) == nil {
+	for _, key := range []string{"points", "phases", "file", "sha256", "import", "also", "columns", "derived", "part"} {
+		n := child(d.duty(i), key)
+		if n == nil || key == "phases" && n.Kind == yaml.MappingNode { // names of stretches stay, phases that tracks are computed of go
 			continue
 		}
 		if err := d.cutKey(d.duty(i), key); err != nil {
@@ -126,7 +167,7 @@ func (f *File) SetupOf(name string) (Setup, bool) {
 		return Setup{}, false
 	}
 	im := f.Imports[i]
-	s := Setup{File: im.File, More: slices.Clone(im.More), SHA256: im.SHA256, Recipe: im.Recipe, Columns: maps.Clone(im.Columns), Derived: map[string]map[string]string{}, Part: im.Part}
+	s := Setup{File: im.File, More: slices.Clone(im.More), SHA256: im.SHA256, Recipe: im.Recipe, Also: slices.Clone(im.Also), Columns: maps.Clone(im.Columns), Derived: map[string]map[string]string{}, Part: im.Part}
 	for _, d := range im.Derived {
 		s.Derived[d.Track] = maps.Clone(d.Says)
 	}

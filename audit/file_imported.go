@@ -4,8 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
-	"io"
-	"io/fs"
+	"maps"
 	"reflect"
 	"slices"
 	"strings"
@@ -175,6 +174,7 @@ func (r *reader) recording(s scope, at *yaml.Node, names []string, recipe *yaml.
 	}
 	name := strings.Join(names, "\n")
 	key := name + "\x00" + string(text)
+	r.file.used[key] = true
 	if t := r.file.tables[key]; t != nil {
 		r.from = t
 		return t.rec
@@ -192,7 +192,6 @@ func (r *reader) recording(s scope, at *yaml.Node, names []string, recipe *yaml.
 		r.bad(s, at, "file", "%v", cannotRead(names[0], err))
 		return nil
 	}
-	r.file.forget(name)
 	t := keptRecording(rec)
 	r.file.tables[key], r.from = t, t
 	return rec
@@ -203,78 +202,14 @@ func keptRecording(rec *logger.Recording) *recorded {
 	return &recorded{rec: rec, channels: map[string][]float64{}}
 }
 
-// importsKept is how many imports of one file are kept: of duties that read it in other ways, and of one undone.
-const importsKept = 3
-
-// forget drops what was read of a file by other recipes when there is too much of it.
-func (f *File) forget(name string) {
-	var of []string
-	for k, t := range f.tables {
-		if t.rec != nil && strings.HasPrefix(k, name+"\x00") {
-			of = append(of, k)
-		}
+// forget drops what was read of recordings and is no longer needed. What the text before needed
+// stays until another text ceases to need something, so that one undo reads nothing again.
+func (f *File) forget(before map[string]bool) {
+	ceased := false
+	for key := range before {
+		ceased = ceased || !f.used[key]
 	}
-	if len(of) >= importsKept {
-		for _, k := range of {
-			delete(f.tables, k)
-		}
-	}
-}
-
-func (f *File) importFiles(names []string, rp logger.Recipe) (*logger.Recording, error) {
-	sizes := make([]int64, len(names))
-	for k, name := range names {
-		in, err := f.open(name)
-		if err != nil {
-			return nil, cannotRead(name, err)
-		}
-		sizes[k] = sizeOf(in)
-		in.Close()
-	}
-	ctx, progress := f.how.Context, (func(done, total int64))(nil)
-	if ctx == nil {
-		ctx = context.Background()
-	}
-	if f.how.Progress != nil {
-		progress = func(done, total int64) { f.how.Progress(names[0], done, total) }
-	}
-	open := func(k int) (io.ReadCloser, error) { return f.open(names[k]) }
-	if rec := f.how.known(names, rp); rec != nil {
-		if sum, err := logger.Sum(ctx, sizes, open, progress); err != nil || sum == rec.SHA256 {
-			return rec, err
-		}
-	}
-	file, err := logger.OpenSources(names, sizes, open)
-	if err != nil {
-		return nil, err
-	}
-	return file.Import(ctx, rp, progress)
-}
-
-// known finds a recording that another file has read by the same recipe.
-func (how Importing) known(names []string, rp logger.Recipe) *logger.Recording {
-	if how.Known == nil {
-		return nil
-	}
-	for key, t := range how.Known.tables {
-		if t.rec != nil && strings.HasPrefix(key, strings.Join(names, "\n")+"\x00") && reflect.DeepEqual(t.rec.Recipe, rp) {
-			return t.rec
-		}
-	}
-	return nil
-}
-
-// sizeOf tells how many bytes something that was opened holds, 0 where it does not say.
-func sizeOf(in io.Reader) int64 {
-	switch x := in.(type) {
-	case interface{ Stat() (fs.FileInfo, error) }:
-		if info, err := x.Stat(); err == nil {
-			return info.Size()
-		}
-	case interface{ Size() int64 }:
-		return x.Size()
-	}
-	return 0
+	maps.DeleteFunc(f.tables, func(key string, _ *recorded) bool { return ceased && !f.used[key] && !before[key] })
 }
 
 // channelTracks takes channels as they are: which track is which column.

@@ -235,22 +235,24 @@ func (r *reader) plain(n *yaml.Node) bool {
 	return ok
 }
 
-// parse is Parse with the recordings that are read already.
-func parse(data []byte, open Open, path string, tables map[string]*recorded) (*File, []circuit.Finding) {
+// parse reads another text in place of that of f, with the recordings that f has read.
+func (f *File) parse(data []byte, how Importing) (*File, []circuit.Finding) {
 	root, faults := load(data)
 	if len(faults) > 0 {
 		return nil, faults
 	}
-	return parseTree(root, data, open, path, tables, Importing{})
+	return f.parseTree(root, data, how)
 }
 
 // parseTree is parse for a text whose node tree is made already.
-func parseTree(root *yaml.Node, data []byte, open Open, path string, tables map[string]*recorded, how Importing) (*File, []circuit.Finding) {
-	f := &File{Path: path, data: data, root: root, open: open, tables: maps.Clone(tables), how: how} // other files may be copied meanwhile
-	r := &reader{file: f, axes: map[string]bool{}, blocks: map[string]bool{}}
+func (f *File) parseTree(root *yaml.Node, data []byte, how Importing) (*File, []circuit.Finding) {
+	g := &File{Path: f.Path, data: data, root: root, open: f.open, tables: map[string]*recorded{}, used: map[string]bool{}, how: how}
+	maps.Copy(g.tables, f.tables) // other files may be copied meanwhile
+	r := &reader{file: g, axes: map[string]bool{}, blocks: map[string]bool{}}
 	if !r.plain(root) || !r.top(root) {
 		return nil, r.found
 	}
-	f.found, f.how = r.found, Importing{} // an edit reads what is new without them
-	return f, f.Findings()
+	g.found, g.how = r.found, Importing{} // an edit reads what is new without them
+	g.forget(f.used)
+	return g, g.Findings()
 }

@@ -200,6 +200,7 @@ func (t *recorded) asWritten() []machines.Column {
 // table reads a recording, once.
 func (r *reader) table(s scope, n *yaml.Node, key, name string) *recorded {
 	f := r.file
+	f.used[name] = true
 	if t := f.tables[name]; t != nil {
 		return t
 	}
@@ -216,7 +217,11 @@ func (r *reader) table(s scope, n *yaml.Node, key, name string) *recorded {
 		return nil
 	}
 	defer in.Close()
-	t, faults := recording.ReadTable(name, in)
+	t, faults := recording.ReadTable(name, f.how.watch(name, in))
+	if f.how.ended() {
+		r.bad(s, n, key, "reading %s was cancelled", name)
+		return nil
+	}
 	for _, fault := range faults {
 		r.bad(s, n, key, "%v", fault)
 	}

@@ -1,6 +1,7 @@
 package audit
 
 import (
+	"errors"
 	"maps"
 	"slices"
 	"strings"
@@ -26,7 +27,8 @@ func (f *File) KeptOf(i int) *Kept {
 	if i < 0 || i >= len(f.Imports) || f.Imports[i] == nil {
 		return nil
 	}
-	if key, err := importKey(f.Imports[i].File, child(f.dutyNode(i), "import")); err == nil && f.tables[key] != nil {
+	im := f.Imports[i]
+	if key, err := importKey(strings.Join(append([]string{im.File}, im.More...), "\n"), child(f.dutyNode(i), "import")); err == nil && f.tables[key] != nil {
 		return &Kept{f.tables[key]}
 	}
 	return nil
@@ -43,18 +45,30 @@ func importKey(name string, recipe *yaml.Node) (string, error) {
 
 // Taking says how a duty is made of a recording that was read.
 type Taking struct {
-	Duty   string // its name
-	File   string // beside the audit file, with forward slashes
+	Duty   string   // its name
+	File   string   // beside the audit file, with forward slashes
+	More   []string // files that go on where File ends
 	Kept   *Kept
+	Also   []TakenAlso // recordings of other loggers
 	Tracks []logged.Track
 	Part   logged.Part
 	Axes   []duty.Axis       // that the file does not have yet
 	Keys   map[string]string // of a new duty, as SetDuty takes them
 }
 
+// TakenAlso is the recording of another logger that was read: its Files, Recipe and Clock count.
+type TakenAlso struct {
+	Also
+	Kept *Kept
+}
+
 func (t Taking) setup() Setup {
 	rec := t.Kept.as.rec
-	s := Setup{File: t.File, SHA256: rec.SHA256, Recipe: rec.Recipe, Columns: map[string]string{}, Derived: map[string]map[string]string{}, Part: t.Part}
+	s := Setup{File: t.File, More: t.More, SHA256: rec.SHA256, Recipe: rec.Recipe, Columns: map[string]string{}, Derived: map[string]map[string]string{}, Part: t.Part}
+	for _, a := range t.Also {
+		a.SHA256, a.Recipe = a.Kept.as.rec.SHA256, a.Kept.as.rec.Recipe
+		s.Also = append(s.Also, a.Also)
+	}
 	for _, x := range t.Tracks {
 		if x.Law == logged.AsMeasured {
 			s.Columns[x.Name] = x.Says["column"]
@@ -82,19 +96,13 @@ func (f *File) TakeIn(t Taking) error {
 		}
 	}
 	s, name := t.setup(), oneLine(t.Duty)
-	recipe, err := onOneLine(s.Recipe)
+	err := g.know(append([]string{t.File}, t.More...), t.Kept)
+	for _, a := range t.Also {
+		err = errors.Join(err, g.know(a.Files, a.Kept))
+	}
 	if err != nil {
 		return err
 	}
-	docs, err := decode([]byte(recipe))
-	if err != nil || len(docs) != 1 {
-		return errLayout
-	}
-	key, err := importKey(t.File, docs[0].Content[0])
-	if err != nil {
-		return err
-	}
-	g.tables[key] = t.Kept.as
 	if g.dutyIndex(name) >= 0 {
 		err = g.SetImport(name, s)
 	} else if err = g.ImportDuty(name, s); err == nil {
@@ -107,6 +115,21 @@ func (f *File) TakeIn(t Taking) error {
 	if err == nil {
 		*f = g
 	}
+	return err
+}
+
+// know keeps a recording that was read, under the key that the text will have for it.
+func (f *File) know(names []string, k *Kept) error {
+	recipe, err := onOneLine(k.as.rec.Recipe)
+	if err != nil {
+		return err
+	}
+	docs, err := decode([]byte(recipe))
+	if err != nil || len(docs) != 1 {
+		return errLayout
+	}
+	key, err := importKey(strings.Join(names, "\n"), docs[0].Content[0])
+	f.tables[key] = k.as
 	return err
 }
 

@@ -2,8 +2,11 @@ package document
 
 import (
 	"bytes"
+	"context"
 	"slices"
 	"time"
+
+	"barlitre/audit"
 )
 
 // entry is one step of undo: in the text, old stood where new stands now. Only what
@@ -64,8 +67,11 @@ func (h *history) add(key, name string, when time.Time, from, to []byte) {
 }
 
 // Undo takes the last edit back and returns its name; ok is false when there is none.
-func (d *Document) Undo() (name string, ok bool) {
-	return d.travel(func(h *history, text []byte) (entry, []byte, bool) {
+func (d *Document) Undo() (name string, ok bool) { return d.UndoWith(context.Background(), nil) }
+
+// UndoWith is Undo where a recording may have to be read again; ok is false when that is cancelled.
+func (d *Document) UndoWith(ctx context.Context, progress Progress) (name string, ok bool) {
+	return d.travel(d.reading(ctx, progress), func(h *history, text []byte) (entry, []byte, bool) {
 		e, ok := last(h.done)
 		if ok {
 			text = e.before(text)
@@ -77,8 +83,11 @@ func (d *Document) Undo() (name string, ok bool) {
 }
 
 // Redo does again what Undo took back last.
-func (d *Document) Redo() (name string, ok bool) {
-	return d.travel(func(h *history, text []byte) (entry, []byte, bool) {
+func (d *Document) Redo() (name string, ok bool) { return d.RedoWith(context.Background(), nil) }
+
+// RedoWith is Redo as UndoWith is Undo.
+func (d *Document) RedoWith(ctx context.Context, progress Progress) (name string, ok bool) {
+	return d.travel(d.reading(ctx, progress), func(h *history, text []byte) (entry, []byte, bool) {
 		e, ok := last(h.undone)
 		if ok {
 			text = e.after(text)
@@ -114,7 +123,7 @@ func last(list []entry) (entry, bool) {
 
 // travel goes one entry back or forth: find tells the entry and the text it leads
 // to, move puts it on the other side.
-func (d *Document) travel(find func(*history, []byte) (entry, []byte, bool), move func(*history, entry)) (string, bool) {
+func (d *Document) travel(how audit.Importing, find func(*history, []byte) (entry, []byte, bool), move func(*history, entry)) (string, bool) {
 	d.editing.Lock()
 	d.mu.Lock()
 	now := d.now
@@ -126,8 +135,8 @@ func (d *Document) travel(find func(*history, []byte) (entry, []byte, bool), mov
 		return "", false
 	}
 	f := *now.file
-	err := guarded(func() error { f.Replace(text); return nil })
-	if err != nil || !bytes.Equal(f.Bytes(), text) { // excluded: the text was read before
+	err := guarded(func() error { f.ReplaceWith(text, how); return nil })
+	if err != nil || !bytes.Equal(f.Bytes(), text) { // cancelled; else excluded: the text was read before
 		d.editing.Unlock()
 		return "", false
 	}

@@ -36,28 +36,30 @@ func (d *Document) Open(path string) (problems []circuit.Finding, err error) {
 // OpenWith is Open for an audit with long recordings: progress, which may be nil, is told
 // how many bytes of which of them are read, and the end of ctx leaves the present audit as it is.
 // What the present audit has read of the same recordings is taken over.
-func (d *Document) OpenWith(ctx context.Context, path string, progress func(file string, done, total int64)) (problems []circuit.Finding, err error) {
+// Neither does it replace what was edited meanwhile.
+func (d *Document) OpenWith(ctx context.Context, path string, progress Progress) (problems []circuit.Finding, err error) {
 	path, err = filepath.Abs(path)
 	if err != nil {
 		return nil, fmt.Errorf("open %s: %w", path, err)
 	}
 	var f *audit.File
 	var found []circuit.Finding
-	how := audit.Importing{Context: ctx, Progress: progress, Known: d.File()}
+	since, how := d.Revision(), d.reading(ctx, progress)
 	if err := guarded(func() error { f, found = audit.ReadWith(path, how); return nil }); err != nil {
 		return nil, fmt.Errorf("open %s: %w", path, err)
 	}
-	if err := ctx.Err(); err != nil {
-		return nil, fmt.Errorf("open %s: it was cancelled; the audit that was open stays", path)
+	if ctx.Err() != nil {
+		return nil, fmt.Errorf("open %s: %w; the audit that was open stays", path, ErrCancelled)
 	}
 	if f == nil {
 		return nil, notRead(path, found)
 	}
-	if err := d.begin(f, origin{Path: path}); err != nil {
-		return nil, err
+	checked := checkFile(f) // before it is shown: a long duty takes its time
+	if err := d.beginUnless(since, f, origin{Path: path}, checked); err != nil {
+		return nil, fmt.Errorf("open %s: %w", path, err)
 	}
 	d.addRecent(path)
-	for _, p := range checkFile(f) {
+	for _, p := range checked {
 		if p.Level == circuit.Stops || p.Level == circuit.Warns {
 			problems = append(problems, p)
 		}
@@ -108,9 +110,13 @@ func (d *Document) OpenEmpty() error {
 }
 
 // begin puts another audit into the document, as saved.
-func (d *Document) begin(f *audit.File, o origin) error {
+func (d *Document) begin(f *audit.File, o origin) error { return d.beginUnless(0, f, o, nil) }
+
+// beginUnless is begin, but for an audit that was edited since a revision, if that is not 0;
+// checked is what checkFile has found, nil when not asked yet.
+func (d *Document) beginUnless(since int, f *audit.File, o origin, checked []circuit.Finding) error {
 	d.files.Lock()
-	revision, ticket, err := d.replace(f, o, f.Bytes(), history{})
+	revision, ticket, err := d.replace(since, f, o, f.Bytes(), history{}, checked)
 	if err == nil {
 		old := d.session
 		d.session = nil
@@ -123,8 +129,8 @@ func (d *Document) begin(f *audit.File, o origin) error {
 	return err
 }
 
-// replace makes f the present audit, to be announced. files is held.
-func (d *Document) replace(f *audit.File, o origin, saved []byte, past history) (revision, ticket int, err error) {
+// replace makes f the present audit, to be announced; since and checked are those of beginUnless. files is held.
+func (d *Document) replace(since int, f *audit.File, o origin, saved []byte, past history, checked []circuit.Finding) (revision, ticket int, err error) {
 	d.editing.Lock()
 	defer d.editing.Unlock()
 	d.mu.Lock()
@@ -132,10 +138,13 @@ func (d *Document) replace(f *audit.File, o origin, saved []byte, past history) 
 	if d.closed {
 		return 0, 0, errClosed
 	}
+	if since != 0 && d.now.revision != since {
+		return 0, 0, errOvertaken
+	}
 	d.now.origin, d.saved, d.past = o, saved, past
 	d.solution, d.solved = nil, 0
 	revision, ticket = d.install(f, f.Bytes())
-	d.opened = revision
+	d.opened, d.checked = revision, checked
 	return revision, ticket, nil
 }
 

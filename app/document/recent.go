@@ -1,6 +1,7 @@
 package document
 
 import (
+	"bytes"
 	"encoding/json"
 	"os"
 	"path/filepath"
@@ -46,6 +47,6 @@ func (d *Document) addRecent(path string) {
 	list := append([]string{path}, slices.DeleteFunc(d.Recent(), func(p string) bool { return p == path })...)
 	data, err := json.MarshalIndent(list[:min(len(list), keepRecent)], "", "  ")
 	if err == nil && os.MkdirAll(d.opt.Config, 0o700) == nil {
-		_ = copyTo(d.recentPath(), data)
+		_ = copyTo(d.recentPath(), bytes.NewReader(data))
 	}
 }

@@ -2,6 +2,7 @@ package document
 
 import (
 	"bytes"
+	"context"
 	"errors"
 	"fmt"
 	"io/fs"
@@ -82,6 +83,11 @@ func (s *session) inspect() (r Recovery, useless bool) {
 // which goes as with Open. Undo leads to what is on disk. On an error the present
 // audit and what is kept stay as they are.
 func (d *Document) Recover(r Recovery) error {
+	return d.RecoverWith(context.Background(), r, nil)
+}
+
+// RecoverWith is Recover for an audit with long recordings, as OpenWith is Open.
+func (d *Document) RecoverWith(ctx context.Context, r Recovery, progress Progress) error {
 	fault := func(err error) error {
 		return fmt.Errorf("recover %s from %s: %w; it is left as it is", r.Name, r.Autosave, err)
 	}
@@ -89,14 +95,23 @@ func (d *Document) Recover(r Recovery) error {
 	if err != nil {
 		return fault(err)
 	}
-	k, f, err := s.load()
+	since, how := d.Revision(), d.reading(ctx, progress)
+	k, f, err := s.load(how)
+	var saved []byte
+	var past history
+	if err == nil {
+		how.Known = f
+		saved, past = k.base(f.Bytes(), d.opt.Now(), how)
+	}
+	if ctx.Err() != nil {
+		err = ErrCancelled
+	}
 	if err != nil {
 		s.release()
 		return fault(err)
 	}
-	saved, past := k.base(f.Bytes(), d.opt.Now())
 	d.files.Lock()
-	revision, ticket, err := d.replace(f, k.origin, saved, past)
+	revision, ticket, err := d.replace(since, f, k.origin, saved, past, nil)
 	if err != nil {
 		d.files.Unlock()
 		s.release()
@@ -113,7 +128,7 @@ func (d *Document) Recover(r Recovery) error {
 	return err
 }
 
-func (s *session) load() (k kept, f *audit.File, err error) {
+func (s *session) load(how audit.Importing) (k kept, f *audit.File, err error) {
 	data, err := os.ReadFile(s.autosave)
 	if err != nil {
 		return k, nil, whole.Plain(err)
@@ -124,7 +139,7 @@ func (s *session) load() (k kept, f *audit.File, err error) {
 	}
 	err = guarded(func() error {
 		var found []error
-		f, found = parseKept(text, k.origin)
+		f, found = parseKept(text, k.origin, how)
 		if f == nil {
 			return errors.Join(found...)
 		}
@@ -133,8 +148,8 @@ func (s *session) load() (k kept, f *audit.File, err error) {
 	return k, f, err
 }
 
-func parseKept(text []byte, o origin) (*audit.File, []error) {
-	f, found := audit.Parse(text, o.opener(), o.Path)
+func parseKept(text []byte, o origin, how audit.Importing) (*audit.File, []error) {
+	f, found := audit.ParseWith(text, o.opener(), o.Path, how)
 	var errs []error
 	for _, n := range found {
 		errs = append(errs, n)
@@ -144,12 +159,12 @@ func parseKept(text []byte, o origin) (*audit.File, []error) {
 
 // base returns what the unsaved changes began with, nil when that is gone, and the
 // one step of undo that leads to it.
-func (k kept) base(text []byte, when time.Time) (saved []byte, past history) {
+func (k kept) base(text []byte, when time.Time, how audit.Importing) (saved []byte, past history) {
 	saved, err := k.text()
 	if err != nil {
 		return nil, history{}
 	}
-	if f, _ := parseKept(saved, k.origin); f != nil {
+	if f, _ := parseKept(saved, k.origin, how); f != nil {
 		past.add("", "Recover unsaved changes", when, saved, text)
 	}
 	return saved, past

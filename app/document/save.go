@@ -2,9 +2,9 @@ package document
 
 import (
 	"bytes"
+	"context"
 	"errors"
 	"fmt"
-	"io"
 	"os"
 	"path/filepath"
 	"slices"
@@ -59,14 +59,18 @@ func (d *Document) save(now state) error {
 // replaced (ErrExists). Recordings that duties are taken from are copied along; a
 // different file in their place is not replaced. On an error, which says the same as
 // that of Save, nothing is written and the document keeps its file.
-func (d *Document) SaveAs(path string) error {
+func (d *Document) SaveAs(path string) error { return d.SaveAsWith(context.Background(), path, nil) }
+
+// SaveAsWith is SaveAs for an audit with long recordings: progress is told of copying them and of
+// reading the copies, and the end of ctx leaves everything as it was.
+func (d *Document) SaveAsWith(ctx context.Context, path string, progress Progress) error {
 	path, err := fullName(path)
 	if err != nil {
 		return err
 	}
 	d.files.Lock()
 	now := d.snapshot()
-	revision, ticket, err := d.saveAs(now, path)
+	revision, ticket, err := d.saveAs(ctx, now, path, progress)
 	d.files.Unlock()
 	if revision != 0 {
 		d.announce(Edited, revision, ticket)
@@ -94,10 +98,18 @@ func fullName(path string) (string, error) {
 	return full, nil
 }
 
-// saveAs is SaveAs with files held; revision is not 0 when the file reads otherwise
+// saveAs is SaveAsWith with files held; revision is not 0 when the file reads otherwise
 // at its new place.
-func (d *Document) saveAs(now state, path string) (revision, ticket int, err error) {
-	copied, err := d.copyBeside(now, path)
+func (d *Document) saveAs(ctx context.Context, now state, path string, progress Progress) (revision, ticket int, err error) {
+	o := origin{Path: path}
+	copied, err := d.copyBeside(ctx, now, path, progress)
+	var there *audit.File // the recordings are there already, the text is not
+	if err == nil {
+		there, _ = audit.ParseWith(now.text, o.opener(), path, audit.Importing{Context: ctx, Progress: progress, Known: now.file})
+		if ctx.Err() != nil {
+			err = fmt.Errorf("save %s: %w; nothing was saved there%s", path, ErrCancelled, d.safe(now))
+		}
+	}
 	if err == nil {
 		err = d.store(now, path)
 	}
@@ -108,7 +120,7 @@ func (d *Document) saveAs(now state, path string) (revision, ticket int, err err
 		return 0, 0, err
 	}
 	d.markSaved(now.text)
-	revision, ticket = d.rebind(origin{Path: path})
+	revision, ticket = d.rebind(o, there)
 	old := d.session
 	d.session = nil
 	d.settle()
@@ -116,14 +128,17 @@ func (d *Document) saveAs(now state, path string) (revision, ticket int, err err
 	return revision, ticket, nil
 }
 
-// rebind reads the present text as that of a file at another place. The recordings
-// there were checked to be the same, but they are read again, and may have changed
-// on disk since they were read first.
-func (d *Document) rebind(o origin) (revision, ticket int) {
+// rebind takes the present text as that of a file at another place; there is what was saved,
+// read there. The recordings there were checked to be the same, but may have changed on disk
+// since they were read first.
+func (d *Document) rebind(o origin, there *audit.File) (revision, ticket int) {
 	d.editing.Lock()
 	defer d.editing.Unlock()
 	now := d.snapshot()
-	f, _ := audit.ParseWith(now.text, o.opener(), o.Path, audit.Importing{Known: now.file})
+	f := there
+	if f == nil || !bytes.Equal(now.text, f.Bytes()) { // edited meanwhile
+		f, _ = audit.ParseWith(now.text, o.opener(), o.Path, audit.Importing{Known: there})
+	}
 	d.mu.Lock()
 	defer d.mu.Unlock()
 	d.now.origin = o
@@ -166,51 +181,4 @@ func (d *Document) safe(now state) string {
 		text += " and kept in " + d.session.autosave
 	}
 	return text
-}
-
-// copyBeside puts the recordings and tables that an audit names beside a path, and returns
-// the files it made.
-func (d *Document) copyBeside(now state, path string) (made []string, err error) {
-	from, to := filepath.Dir(now.Path), filepath.Dir(path)
-	if now.Path != "" && from == to {
-		return nil, nil
-	}
-	open := now.opener()
-	if open == nil {
-		return nil, nil
-	}
-	for _, name := range now.file.Beside() {
-		data, err := wholeFile(open, name)
-		if err != nil {
-			return made, fmt.Errorf("save %s: %s, which the audit names, cannot be read to be copied along: %w%s", path, filepath.Join(from, name), whole.Plain(err), d.safe(now))
-		}
-		target := filepath.Join(to, filepath.FromSlash(name))
-		if there, err := os.ReadFile(target); err == nil {
-			if !bytes.Equal(there, data) {
-				return made, fmt.Errorf("save %s: %s, which the audit names, would replace a different file, %s; choose another folder%s", path, name, target, d.safe(now))
-			}
-			continue
-		}
-		if err := copyTo(target, data); err != nil {
-			return made, fmt.Errorf("save %s: %s, which the audit names, cannot be copied to %s: %w%s", path, name, target, whole.Plain(err), d.safe(now))
-		}
-		made = append(made, target)
-	}
-	return made, nil
-}
-
-func wholeFile(open audit.Open, name string) ([]byte, error) {
-	in, err := open(name)
-	if err != nil {
-		return nil, err
-	}
-	defer in.Close()
-	return io.ReadAll(in)
-}
-
-func copyTo(path string, data []byte) error {
-	if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
-		return err
-	}
-	return whole.Write(path, whole.Bytes(data))
 }

@@ -18,6 +18,9 @@ type box struct {
 
 // asking reports whether a dialog is open: the menu then waits.
 func (f *Frame) asking() bool {
+	if f.working != nil { // its box comes in a moment
+		return true
+	}
 	for _, b := range f.boxes {
 		if b.shown() {
 			return true
@@ -51,8 +54,12 @@ func (f *Frame) openBoxes() []*closable {
 	return out
 }
 
-// escape closes the dialog on top and reports whether there was one.
+// escape closes the dialog on top and reports whether there was one. That of work on files ends the work.
 func (f *Frame) escape() bool {
+	if f.working != nil {
+		f.working.stop()
+		return true
+	}
 	open := f.openBoxes()
 	if len(open) == 0 {
 		pop, ok := f.win.Canvas().Overlays().Top().(*widget.PopUp)
@@ -82,7 +89,7 @@ func (f *Frame) ask(title string, content fyne.CanvasObject, answers ...answer) 
 			if a.do != nil {
 				a.do()
 			}
-		}, b.d.Hide)
+		}, func() { f.escape() })
 		switch {
 		case a.danger:
 			button.Importance = widget.DangerImportance

@@ -1,6 +1,7 @@
 package frame
 
 import (
+	"context"
 	"os"
 	"path/filepath"
 	"slices"
@@ -17,6 +18,7 @@ import (
 	"barlitre/app/station"
 	"barlitre/app/widgets"
 	"barlitre/audit"
+	"barlitre/circuit"
 	"barlitre/samples"
 )
 
@@ -45,6 +47,9 @@ func (f *Frame) quit() {
 		f.settings.width, f.settings.height = size.Width, size.Height
 		f.settings.write(f.app.Preferences())
 		f.dumper.stop()
+		if f.working != nil {
+			f.working.stop() // the document waits for it
+		}
 		if err := f.doc.Abandon(); err != nil {
 			fyne.LogError("close", err)
 		}
@@ -53,16 +58,21 @@ func (f *Frame) quit() {
 }
 
 func (f *Frame) open(path string) {
-	problems, err := f.doc.Open(path)
-	if err != nil {
-		f.Fail(err)
-		return
-	}
-	if n := len(problems); n > 0 {
-		f.Say(plural(n, "finding", "findings") + " in " + filepath.Base(path) + "; they stand on the Circuit station")
-	} else {
-		f.Say("Opened " + path)
-	}
+	var problems []circuit.Finding
+	f.perform("Opening "+filepath.Base(path), func(ctx context.Context, tell document.Progress) (err error) {
+		problems, err = f.doc.OpenWith(ctx, path, tell)
+		return err
+	}, func(err error) {
+		switch n := len(problems); {
+		case f.cancelled(err, "The audit that was open stays as it was."):
+		case err != nil:
+			f.Fail(err)
+		case n > 0:
+			f.Say(plural(n, "finding", "findings") + " in " + filepath.Base(path) + "; they stand on the Circuit station")
+		default:
+			f.Say("Opened " + path)
+		}
+	})
 }
 
 func plural(n int, one, many string) string {
@@ -214,7 +224,16 @@ func (f *Frame) save(then func()) {
 	f.saved(f.doc.Save(), then)
 }
 
+// saveUnder saves under a name, with the recordings.
+func (f *Frame) saveUnder(path string, then func()) {
+	f.perform("Saving "+filepath.Base(path), func(ctx context.Context, tell document.Progress) error { return f.doc.SaveAsWith(ctx, path, tell) },
+		func(err error) { f.saved(err, then) })
+}
+
 func (f *Frame) saved(err error, then func()) {
+	if f.cancelled(err, "Nothing was saved there; the audit stays open as it is.") {
+		return
+	}
 	if err != nil {
 		f.Fail(err)
 		return
@@ -229,7 +248,7 @@ func (f *Frame) saved(err error, then func()) {
 // saveAs asks for a name. Scripts may give a folder instead.
 func (f *Frame) saveAs(then func()) {
 	if dir := os.Getenv(saveDirVariable); dir != "" {
-		f.saved(f.doc.SaveAs(filepath.Join(dir, "audit.yaml")), then)
+		f.saveUnder(filepath.Join(dir, "audit.yaml"), then)
 		return
 	}
 	d := dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
@@ -241,7 +260,7 @@ func (f *Frame) saveAs(then func()) {
 			if info, err := os.Stat(path); err == nil && info.Size() == 0 {
 				os.Remove(path)
 			}
-			f.saved(f.doc.SaveAs(path), then)
+			f.saveUnder(path, then)
 		}
 	}, f.win)
 	d.SetFileName(f.suggestedName())
@@ -284,11 +303,15 @@ func (f *Frame) offerRecovery() {
 }
 
 func (f *Frame) recover(r document.Recovery) {
-	if err := f.doc.Recover(r); err != nil {
-		f.Fail(err)
-		return
-	}
-	f.Say("Recovered. Save it to keep it.")
+	f.perform("Recovering "+r.Name, func(ctx context.Context, tell document.Progress) error { return f.doc.RecoverWith(ctx, r, tell) }, func(err error) {
+		switch {
+		case f.cancelled(err, "What was kept is still there, and is offered at the next start."):
+		case err != nil:
+			f.Fail(err)
+		default:
+			f.Say("Recovered. Save it to keep it.")
+		}
+	})
 }
 
 // Explain opens the calculation of a figure: formula, numbers, sources.

@@ -52,6 +52,7 @@ type Frame struct {
 	body    *fyne.Container
 	menu    menus
 	boxes   []*closable // dialogs, the last on top
+	working *long       // what is being done to files, nil = nothing
 	dumper  *dumper
 	closed  bool
 }

@@ -58,10 +58,12 @@ func (b *bench) open(stations ...func(station.Context) station.Station) *bench {
 	b.queue = make(chan func(), 1000)
 	old := post
 	post = func(do func()) { b.queue <- do }
+	waits := waitsFor
+	waitsFor = 20 * time.Second // a busy machine makes nothing long
 	b.Frame = New(test.NewTempApp(b.t), document.Options{Config: b.t.TempDir()}, stations...)
 	b.t.Cleanup(func() {
 		b.doc.Abandon()
-		post = old
+		post, waitsFor = old, waits
 	})
 	return b
 }

@@ -8,8 +8,8 @@ import (
 	"barlitre/app/widgets"
 )
 
-// framesVariable names a file that gets a line a second with how many frames of sheets
-// were drawn in it, for measuring.
+// framesVariable names a file that gets a line a second with how many frames of sheets and
+// of plots over time were drawn in it, for measuring.
 const framesVariable = "BARLITRE_FRAMES"
 
 // countFrames writes the lines until the program ends.
@@ -24,11 +24,8 @@ func countFrames() {
 		return
 	}
 	go func() {
-		last := widgets.Frames.Load()
 		for range time.Tick(time.Second) {
-			now := widgets.Frames.Load()
-			fmt.Fprintln(f, now-last)
-			last = now
+			fmt.Fprintln(f, widgets.Frames.Swap(0), widgets.PlotFrames.Swap(0))
 		}
 	}()
 }

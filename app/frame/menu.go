@@ -1,6 +1,7 @@
 package frame
 
 import (
+	"context"
 	"fmt"
 	"path/filepath"
 	"strings"
@@ -10,6 +11,7 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/driver/desktop"
 
+	"barlitre/app/document"
 	"barlitre/app/station"
 	"barlitre/machines/units"
 	"barlitre/samples"
@@ -59,8 +61,8 @@ func (f *Frame) buildMenu() {
 	m.recent = fyne.NewMenuItem("Open recent", nil)
 	m.recent.ChildMenu = fyne.NewMenu("")
 	m.save = item("Save", key(fyne.KeyS, 0), func() { f.save(nil) })
-	m.undo = item("Undo", &fyne.ShortcutUndo{}, func() { f.undoOr(&fyne.ShortcutUndo{}, "Undone", f.doc.Undo) })
-	m.redo = item("Redo", &fyne.ShortcutRedo{}, func() { f.undoOr(&fyne.ShortcutRedo{}, "Done again", f.doc.Redo) })
+	m.undo = item("Undo", &fyne.ShortcutUndo{}, func() { f.undoOr(&fyne.ShortcutUndo{}, "Undone", f.doc.UndoWith) })
+	m.redo = item("Redo", &fyne.ShortcutRedo{}, func() { f.undoOr(&fyne.ShortcutRedo{}, "Done again", f.doc.RedoWith) })
 	quit := item("Quit", key(fyne.KeyQ, 0), f.quit)
 	quit.IsQuit = true
 	file := fyne.NewMenu("File", start,
@@ -153,16 +155,37 @@ func (m *menus) update(f *Frame) {
 }
 
 // undoOr undoes text in a field that has the focus, else the last edit.
-func (f *Frame) undoOr(s fyne.Shortcut, said string, do func() (string, bool)) {
+func (f *Frame) undoOr(s fyne.Shortcut, said string, do func(context.Context, document.Progress) (string, bool)) {
 	if e, ok := f.win.Canvas().Focused().(fyne.Shortcutable); ok {
 		if t, isText := e.(interface{ SelectedText() string }); isText && t != nil && f.typing() {
 			e.TypedShortcut(s)
 			return
 		}
 	}
-	if name, ok := do(); ok {
-		f.Say(said + ": " + lowerFirst(name))
+	if f.asking() {
+		return
 	}
+	told := func(name string, ok bool) {
+		if ok {
+			f.Say(said + ": " + lowerFirst(name))
+		}
+	}
+	if !f.doc.HasRecordings() {
+		told(do(context.Background(), nil))
+		return
+	}
+	var name string
+	f.perform("Reading the recording again", func(ctx context.Context, tell document.Progress) error {
+		var ok bool
+		if name, ok = do(ctx, tell); !ok && ctx.Err() != nil {
+			return document.ErrCancelled
+		}
+		return nil
+	}, func(err error) {
+		if !f.cancelled(err, "The audit stays as it was.") {
+			told(name, name != "")
+		}
+	})
 }
 
 // lowerFirst makes the name of an edit fit behind a colon.
@@ -197,7 +220,7 @@ func (f *Frame) shortcuts() {
 		}
 	})
 	f.win.Canvas().AddShortcut(&desktop.CustomShortcut{KeyName: fyne.KeyZ, Modifier: fyne.KeyModifierShortcutDefault | fyne.KeyModifierShift}, func(fyne.Shortcut) {
-		f.undoOr(&fyne.ShortcutRedo{}, "Done again", f.doc.Redo)
+		f.undoOr(&fyne.ShortcutRedo{}, "Done again", f.doc.RedoWith)
 	})
 }
 

@@ -114,6 +114,7 @@ func (c *ClockPlot) lay() {
 }
 
 func (c *ClockPlot) paint(w, h int) image.Image {
+	PlotFrames.Add(1)
 	if c.drawn == nil || c.drawn.Image().Rect.Dx() != w || c.drawn.Image().Rect.Dy() != h {
 		c.drawn = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
 	}

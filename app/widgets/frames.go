@@ -2,5 +2,5 @@ package widgets
 
 import "sync/atomic"
 
-// Frames counts the frames of sheets that were drawn.
-var Frames atomic.Int64
+// Frames counts the frames of sheets that were drawn, PlotFrames those of plots over time.
+var Frames, PlotFrames atomic.Int64

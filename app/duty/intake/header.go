@@ -8,6 +8,7 @@ import (
 	"fyne.io/fyne/v2/layout"
 	"fyne.io/fyne/v2/widget"
 
+	"barlitre/app/station"
 	"barlitre/app/widgets"
 )
 
@@ -59,7 +60,7 @@ func (h *header) fill() {
 	if p.file == nil {
 		return
 	}
-	title := "Recording " + p.file.Name + ", " + bytesText(p.file.Size)
+	title := "Recording " + p.file.Name + ", " + station.FileSize(p.file.Size)
 	if p.kept != nil {
 		rec := p.kept.Recording()
 		n := len(rec.Time)
@@ -139,16 +140,4 @@ func (p *Page) ready() string {
 		return "Give the duty a name."
 	}
 	return ""
-}
-
-func bytesText(n int64) string {
-	switch {
-	case n >= 1<<30:
-		return fmt.Sprintf("%.2f GB", float64(n)/(1<<30))
-	case n >= 1<<20:
-		return fmt.Sprintf("%.1f MB", float64(n)/(1<<20))
-	case n >= 1<<10:
-		return fmt.Sprintf("%.0f kB", float64(n)/(1<<10))
-	}
-	return fmt.Sprintf("%d bytes", n)
 }

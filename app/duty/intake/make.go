@@ -177,10 +177,24 @@ func (p *Page) finish(file, hours string) {
 			t.Keys["instants"] = "no" // sums over the rows, as anyone can repeat them
 		}
 	}
-	p.work.Lock()
-	err := p.ctx.Doc().Edit(step, func(f *audit.File) error { return f.TakeIn(t) })
-	p.work.Unlock()
+	doc := p.ctx.Doc()
+	p.start("Making the duty", func(ctx context.Context, _ func(float64)) func() {
+		p.work.Lock()
+		defer p.work.Unlock()
+		err := doc.Edit(step, func(f *audit.File) error {
+			if err := f.TakeIn(t); err != nil {
+				return err
+			}
+			return ctx.Err() // cancelled meanwhile: nothing is changed
+		})
+		return func() { p.made(t, file, err) }
+	})
+}
+
+// made leaves once the duty is in the audit, and says so.
+func (p *Page) made(t audit.Taking, file string, err error) {
 	if err != nil {
+		p.refresh()
 		p.ctx.Fail(fmt.Errorf("%w. Nothing was changed", err))
 		return
 	}

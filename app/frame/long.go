@@ -1,0 +1,140 @@
+package frame
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"sync/atomic"
+	"time"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/widget"
+
+	"barlitre/app/document"
+	"barlitre/app/station"
+	"barlitre/app/widgets"
+)
+
+// Times of work that may be long: for so long the window waits, so that what is short is
+// done when a click returns; after so long progress is shown.
+var (
+	waitsFor  = 100 * time.Millisecond
+	shownFrom = 300 * time.Millisecond
+)
+
+// tellEvery is how often progress is shown.
+const tellEvery = 100 * time.Millisecond
+
+// long is work on files that may take long: it is done on another goroutine, with progress
+// and Cancel in a box before the window, which stays alive.
+type long struct {
+	f     *Frame
+	title string
+	stop  context.CancelFunc
+	ended bool
+	box   *box
+	bar   *widget.ProgressBar
+	says  *widget.Label
+	share atomic.Pointer[told] // last told, shown or not
+}
+
+// told is how far a file is.
+type told struct {
+	file        string
+	done, total int64
+}
+
+// perform does work and then goes on here. Until it has ended the menu and the keys wait.
+func (f *Frame) perform(title string, do func(ctx context.Context, tell document.Progress) error, then func(err error)) {
+	ctx, stop := context.WithCancel(context.Background())
+	l := &long{f: f, title: title, stop: stop}
+	f.working = l
+	ended, result := make(chan struct{}), error(nil)
+	go func() {
+		result = do(ctx, l.tell)
+		close(ended)
+	}()
+	finish := func() {
+		if l.ended {
+			return
+		}
+		l.ended = true
+		stop()
+		if f.working = nil; l.box != nil {
+			l.box.d.Hide()
+		}
+		if !f.closed {
+			then(result)
+		}
+	}
+	select {
+	case <-ended:
+		finish()
+		return
+	case <-time.After(waitsFor):
+	}
+	go func() {
+		select {
+		case <-ended:
+		case <-time.After(shownFrom - waitsFor):
+			post(l.show)
+			l.follow(ended)
+		}
+		post(finish)
+	}()
+}
+
+// tell keeps how far the work is; it is called from any goroutine.
+func (l *long) tell(file string, done, total int64) { l.share.Store(&told{file, done, total}) }
+
+// follow shows how far the work is until it has ended.
+func (l *long) follow(ended <-chan struct{}) {
+	tick := time.NewTicker(tellEvery)
+	defer tick.Stop()
+	for {
+		select {
+		case <-ended:
+			return
+		case <-tick.C:
+			post(l.fill)
+		}
+	}
+}
+
+// show opens the box.
+func (l *long) show() {
+	if l.ended || l.f.closed {
+		return
+	}
+	l.bar = widgets.Name(widget.NewProgressBar(), "long.progress")
+	l.says = widgets.Name(widget.NewLabel("…"), "long.says")
+	l.says.Truncation = fyne.TextTruncateEllipsis
+	l.box = l.f.ask(l.title, container.New(fixedWidth{420 * widgets.Scale()}, container.NewVBox(l.says, l.bar)), answer{verb: "Cancel", do: l.stop})
+	l.fill()
+}
+
+// fill says how far the work is.
+func (l *long) fill() {
+	t := l.share.Load()
+	if l.ended || l.box == nil || t == nil {
+		return
+	}
+	text := fmt.Sprintf("%s, %s of %s", t.file, station.FileSize(t.done), station.FileSize(t.total))
+	if t.done >= t.total {
+		text = t.file + " is read; what comes of it is worked out."
+	}
+	l.says.SetText(l.f.Local(text))
+	if t.total > 0 {
+		l.bar.SetValue(float64(t.done) / float64(t.total))
+	}
+}
+
+// cancelled says so where an error is that, and what is there still.
+func (f *Frame) cancelled(err error, stays string) bool {
+	if !errors.Is(err, document.ErrCancelled) {
+		return false
+	}
+	f.Say("Cancelled. " + stays)
+	return true
+}
