@@ -44,6 +44,11 @@ func (r *Raster) Clear(c color.NRGBA) {
 	draw.Draw(r.img, r.img.Bounds(), image.NewUniform(c), image.Point{}, draw.Src)
 }
 
+// touched returns the pixels a rectangle touches.
+func touched(a, b Pt) image.Rectangle {
+	return image.Rect(int(math.Floor(a.X+1e-6)), int(math.Floor(a.Y+1e-6)), int(math.Ceil(b.X-1e-6)), int(math.Ceil(b.Y-1e-6)))
+}
+
 // TextWidth returns the width of s in user units.
 func (r *Raster) TextWidth(s string, size float64, bold bool) float64 {
 	return TextWidth(s, size, bold)
@@ -53,11 +58,9 @@ func (r *Raster) TextWidth(s string, size float64, bold bool) float64 {
 func (r *Raster) ClipRect(x, y, w, h float64) {
 	r.clips = append(r.clips, r.clip)
 	a, b := r.at(Pt{x, y}), r.at(Pt{x + w, y + h})
-	if !r.okPts(0, a, b) {
-		return
+	if r.okPts(0, a, b) {
+		r.clip = r.clip.Intersect(touched(a, b))
 	}
-	r.clip = r.clip.Intersect(image.Rect(int(math.Floor(a.X+1e-6)), int(math.Floor(a.Y+1e-6)),
-		int(math.Ceil(b.X-1e-6)), int(math.Ceil(b.Y-1e-6))))
 }
 
 // Unclip ends the last ClipRect.
@@ -79,13 +82,16 @@ func (r *Raster) Polyline(p []Pt, closed bool, fill color.NRGBA, s Stroke) {
 	r.path(pts, closed, fill, st)
 }
 
+// curveTol is how far a curve may be left by what is drawn of it [px].
+const curveTol = 0.1
+
 // Bezier implements Pen.
 func (r *Raster) Bezier(start Pt, pieces []Cubic, closed bool, fill color.NRGBA, s Stroke) {
 	a, c, st := r.at(start), r.curve(pieces), r.stroke(s)
 	if !r.okCurve(st.W, a, c) {
 		return
 	}
-	r.path(flatten(a, c, 0.1), closed, fill, st)
+	r.path(flatten(a, c, curveTol), closed, fill, st)
 }
 
 // Circle implements Pen.
