@@ -43,12 +43,12 @@ func (r *Raster) Text(p Pt, s string, size float64, c color.NRGBA, al Align, bol
 		r.outlineText(Pt{x, q.Y}, s, px, 0, c, f)
 		return
 	}
-	src := image.NewUniform(c)
+	r.colour.C = c
 	y := int(math.Round(q.Y)) // letters of a line share a pixel row
 	for _, g := range f.set(s, x, px) {
 		at := g.img.Rect.Add(image.Pt(g.x, y))
 		if to := at.Intersect(r.clip); !to.Empty() {
-			draw.DrawMask(r.img, to, src, image.Point{}, g.img, g.img.Rect.Min.Add(to.Min.Sub(at.Min)), draw.Over)
+			draw.DrawMask(r.img, to, &r.colour, image.Point{}, g.img, g.img.Rect.Min.Add(to.Min.Sub(at.Min)), draw.Over)
 		}
 	}
 }
