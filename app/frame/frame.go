@@ -146,8 +146,8 @@ func (f *Frame) changed(w station.What) {
 	if w.Has(station.Model | station.Settings | station.Selection) {
 		f.strip.reload()
 	}
-	if w.Has(station.Clock) {
-		f.strip.moved()
+	if w.Has(station.Clock | station.Reading) {
+		f.strip.moved(w.Has(station.Reading))
 	}
 }
 
@@ -242,12 +242,15 @@ func (f *Frame) Window() fyne.Window { return f.win }
 func (f *Frame) Clock() float64 { return f.clock }
 
 // SetClock moves the clock, kept inside the duty.
-func (f *Frame) SetClock(t float64) {
+func (f *Frame) SetClock(t float64) { f.moveClock(t, station.Clock|station.Reading) }
+
+// moveClock is SetClock that tells of no more than what is asked for.
+func (f *Frame) moveClock(t float64, tell station.What) {
 	from, to := f.span()
 	t = math.Max(from, math.Min(to, t))
 	if t != f.clock && !math.IsNaN(t) {
 		f.clock = t
-		f.changed(station.Clock)
+		f.changed(tell)
 	}
 }
 
@@ -261,7 +264,7 @@ func (f *Frame) SetDuty(i int) {
 	}
 	f.duty = i
 	f.clock = f.firstMotion()
-	f.changed(station.Selection | station.Clock)
+	f.changed(station.Selection | station.Clock | station.Reading)
 }
 
 // Selected returns the block at hand.

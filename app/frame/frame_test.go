@@ -303,3 +303,44 @@ func TestUpToDateWhenTold(t *testing.T) {
 		t.Errorf("the state says %q, the station heard of %d results", text, told)
 	}
 }
+
+// While the clock runs its line follows each frame, and values at it are written ten times a
+// second: nobody reads more.
+func TestClockRunsSmoothlyAndIsReadSlowly(t *testing.T) {
+	b := newBench(t)
+	b.Open("")
+	b.solved()
+	b.player.factor = 1
+	b.strip.toggle()
+	if !b.player.running() || b.strip.play.Text != "Pause" {
+		t.Fatal("the clock does not run")
+	}
+	b.pages[0].told = nil
+	from, now := b.clock, b.player.last
+	line := b.strip.figure.line.Position().X
+	read := 0
+	for range 60 {
+		now = now.Add(time.Second / 60)
+		b.player.step(now)
+		if x := b.strip.figure.line.Position().X; x <= line {
+			t.Fatalf("the line stays at %g", x)
+		} else {
+			line = x
+		}
+	}
+	for _, w := range b.pages[0].told {
+		if w.Has(station.Reading) {
+			read++
+		}
+	}
+	if n := len(b.pages[0].told); n != 60 || read < 8 || read > 11 {
+		t.Errorf("in a second the station was told %d times, %d of them to read", n, read)
+	}
+	if got := b.clock - from; got < 0.999 || got > 1.001 {
+		t.Errorf("the clock went %g s in a second", got)
+	}
+	b.strip.toggle()
+	if last := b.pages[0].told[len(b.pages[0].told)-1]; b.player.running() || !last.Has(station.Reading) {
+		t.Errorf("when it stops the station is told %v last", last)
+	}
+}

@@ -6,6 +6,7 @@ import (
 	"slices"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/driver/desktop"
 
@@ -142,32 +143,42 @@ func (s *strip) lanes(d *duty.Duty, axes []duty.Axis) figures.Plot {
 	return plot
 }
 
-func (s *strip) moved() { s.figure.RefreshOver() }
+// moved follows the clock, and writes the values at it if they are to be read.
+func (s *strip) moved(read bool) { s.figure.follow(read) }
 
-// clockFigure is the strip's figure: the clock follows click, drag and arrow keys.
+// clockFigure is the strip's figure: the clock follows click, drag and arrow keys. Its line
+// and the values at it lie over the tracks, which stay as they are while it moves.
 type clockFigure struct {
 	*widgets.Figure
-	s     *strip
-	focus bool
+	s       *strip
+	focus   bool
+	line    *canvas.Rectangle
+	head    *canvas.Raster
+	flag    *canvas.Raster
+	pen     *pen.Raster // of the flag
+	text    string      // in it
+	pointer fyne.Position
 }
 
 func newClockFigure(s *strip) *clockFigure {
-	c := &clockFigure{s: s}
+	c := &clockFigure{s: s, line: canvas.NewRectangle(color.Transparent)}
 	c.Figure = widgets.NewFigure(fyne.NewSize(240, stripSlim), func(p pen.Pen, w, h float64) []widgets.Part {
-		parts := s.draw(p, w, h)
+		s.draw(p, w, h)
 		if c.focus {
 			pen.Rect(p, 1, 1, w-2, h-2, color.NRGBA{}, pen.Stroke{W: 2, C: s.f.Palette().Gain})
 		}
-		return parts
+		return nil
 	})
-	c.Under = s.drawUnder
+	c.head, c.flag = canvas.NewRaster(c.paintHead), canvas.NewRaster(c.paintFlag)
+	c.head.ScaleMode, c.flag.ScaleMode = canvas.ImageScalePixels, canvas.ImageScalePixels
+	c.Over = []fyne.CanvasObject{c.line, c.head, c.flag}
 	c.ExtendBaseWidget(c)
 	return c
 }
 
 func (c *clockFigure) to(x float32) {
 	c.s.f.player.stop()
-	c.s.f.SetClock(c.s.area.At(float64(x/widgets.Scale()) - 6))
+	c.s.f.SetClock(c.s.area.At(float64(x/widgets.Scale()) - stripPad))
 }
 
 // MouseDown sets the clock and takes the focus.

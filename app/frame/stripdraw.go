@@ -1,7 +1,6 @@
 package frame
 
 import (
-	"fmt"
 	"math"
 
 	"fyne.io/fyne/v2"
@@ -13,8 +12,8 @@ import (
 	"barlitre/machines/units"
 )
 
-// drawUnder draws the tracks, which stay while the clock moves.
-func (s *strip) drawUnder(p pen.Pen, w, h float64) {
+// draw draws the tracks.
+func (s *strip) draw(p pen.Pen, w, h float64) {
 	pal := s.f.Palette()
 	pen.Rect(p, 0, 0, w, h, pal.Card, pen.Stroke{})
 	if len(s.plot.Lanes) == 0 {
@@ -24,33 +23,10 @@ func (s *strip) drawUnder(p pen.Pen, w, h float64) {
 	s.drawTracks(p, w, h, pal)
 }
 
-// draw draws the clock with the values at it over the tracks.
-func (s *strip) draw(p pen.Pen, w, h float64) []widgets.Part {
-	pal := s.f.Palette()
-	if len(s.plot.Lanes) == 0 || s.area.W <= 0 {
-		return nil
-	}
-	x := 6 + s.area.XAt(s.f.clock)
-	foot := h - 21
-	p.Polyline([]pen.Pt{{X: x, Y: 8}, {X: x, Y: foot}}, false, pal.Danger, pen.Stroke{W: 1.4, C: pal.Danger})
-	p.Polyline([]pen.Pt{{X: x - 5, Y: 1}, {X: x + 5, Y: 1}, {X: x, Y: 9}}, true, pal.Danger, pen.Stroke{})
-	// The values stand over the numbers of the axis: there they hide no phase and no track.
-	text := s.f.Local(s.atClock())
-	text = pen.Shorten(text, 11, true, w-s.area.X-20)
-	tw := p.TextWidth(text, 11, true) + 10
-	bx := max(6+s.area.X, min(w-4-tw, x-tw/2))
-	pen.RoundRect(p, bx, foot, tw, 17, 3, pal.Ground, pen.Stroke{W: 1, C: pal.Danger})
-	p.Text(pen.Pt{X: bx + 5, Y: foot + 12.5}, text, 11, pal.Ink, pen.Left, true)
-	return []widgets.Part{
-		{Name: "tracks", Text: fmt.Sprint(len(s.plot.Lanes)), X: 6 + s.area.X, Y: 0, W: s.area.W, H: h},
-		{Name: "clock", Text: s.f.Local(units.Number(s.f.clock, 4)) + " s", X: x - 6, Y: 0, W: 12, H: h, Click: true},
-	}
-}
-
-// drawTracks draws as many lanes as can be read at a height; with room for none, the phases
-// alone. What is not drawn is named, and stands at the Duty station.
-func (s *strip) drawTracks(p pen.Pen, w, h float64, pal figures.Palette) {
-	plot := s.plot
+// seen is the plot of as many lanes as can be read at a height, and how many more there are;
+// with room for none the phases alone are drawn.
+func (s *strip) seen(h float64) (plot figures.Plot, more int, bare bool) {
+	plot = s.plot
 	fit := 0
 	switch {
 	case h >= 0.9*stripHigh:
@@ -58,24 +34,52 @@ func (s *strip) drawTracks(p pen.Pen, w, h float64, pal figures.Palette) {
 	case h >= 0.9*stripLow:
 		fit = 1
 	}
-	if more := len(plot.Lanes) - fit; more > 0 && fit > 0 {
+	if more = len(plot.Lanes) - fit; more > 0 && fit > 0 {
 		plot.Lanes = plot.Lanes[:fit]
+		return plot, more, false
+	}
+	return plot, 0, fit == 0
+}
+
+// lay finds where the tracks lie in a size.
+func (s *strip) lay(w, h float64) {
+	s.area = figures.PlotArea{}
+	if len(s.plot.Lanes) == 0 || w <= 0 || h <= 0 || s.plot.To <= s.plot.From {
+		return
+	}
+	if plot, _, bare := s.seen(h); bare {
+		s.area = phasesArea(plot, w-20)
+	} else {
+		s.area = plot.Draw(figures.Measure{}, w-20, h-4, s.f.Palette())
+	}
+}
+
+// drawTracks draws the lanes that are seen. What is not drawn is named, and stands at the
+// Duty station.
+func (s *strip) drawTracks(p pen.Pen, w, h float64, pal figures.Palette) {
+	plot, more, bare := s.seen(h)
+	if more > 0 {
 		p.Text(pen.Pt{X: 6, Y: 13}, "+ "+plural(more, "track", "tracks"), 10, pal.Secondary, pen.Left, false)
 	}
-	p.Push(6, 2, 1)
-	if fit > 0 {
-		s.area = plot.Draw(p, w-20, h-4, pal)
+	p.Push(stripPad, 2, 1)
+	if bare {
+		drawPhases(p, plot, w-20, h-4, pal)
 	} else {
-		s.area = drawPhases(p, plot, w-20, h-4, pal)
+		plot.Draw(p, w-20, h-4, pal)
 	}
 	p.Pop()
 }
 
+// phasesArea is where the line of time lies.
+func phasesArea(plot figures.Plot, w float64) figures.PlotArea {
+	return figures.PlotArea{X: 10, W: w - 20, From: plot.From, To: plot.To}
+}
+
 // drawPhases draws a line of time with the names of the phases.
-func drawPhases(p pen.Pen, plot figures.Plot, w, h float64, pal figures.Palette) figures.PlotArea {
-	a := figures.PlotArea{X: 10, W: w - 20, From: plot.From, To: plot.To}
+func drawPhases(p pen.Pen, plot figures.Plot, w, h float64, pal figures.Palette) {
+	a := phasesArea(plot, w)
 	if a.W <= 0 || a.To <= a.From {
-		return figures.PlotArea{}
+		return
 	}
 	y := h - 24
 	pen.Line(p, pen.Pt{X: a.X, Y: y}, pen.Pt{X: a.X + a.W, Y: y}, pen.Stroke{W: 1.4, C: pal.Ink})
@@ -92,7 +96,6 @@ func drawPhases(p pen.Pen, plot figures.Plot, w, h float64, pal figures.Palette)
 	tick(a.To)
 	p.Text(pen.Pt{X: a.X, Y: h - 4}, units.Number(a.From, 3)+" s", 10, pal.Secondary, pen.Left, false)
 	p.Text(pen.Pt{X: a.X + a.W, Y: h - 4}, units.Number(a.To, 4)+" s", 10, pal.Secondary, pen.Right, false)
-	return a
 }
 
 // stack puts the choice of the duty over the play button, close where there is little room.

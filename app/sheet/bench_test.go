@@ -129,12 +129,12 @@ func (b *bench) Window() fyne.Window     { return b.win }
 func (b *bench) Clock() float64          { return b.clock }
 func (b *bench) SetClock(t float64) {
 	b.clock = t
-	b.s.Changed(station.Clock)
+	b.s.Changed(station.Clock | station.Reading)
 }
 func (b *bench) Duty() int { return b.duty }
 func (b *bench) SetDuty(i int) {
 	b.duty, b.clock = i, 0
-	b.s.Changed(station.Selection | station.Clock)
+	b.s.Changed(station.Selection | station.Clock | station.Reading)
 }
 func (b *bench) Selected() (int, string) { return b.circuit, b.block }
 func (b *bench) Select(circuit int, block string) {

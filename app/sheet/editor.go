@@ -65,7 +65,7 @@ type editor struct {
 		at   time.Time
 	}
 	raster *canvas.Raster
-	pen    *pen.Raster
+	pen    *pen.Mosaic
 	over   *fyne.Container
 	band   *canvas.Rectangle
 	ring   *widgets.Rim

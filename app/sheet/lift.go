@@ -1,7 +1,6 @@
 package sheet
 
 import (
-	"image"
 	"math"
 	"time"
 
@@ -10,6 +9,7 @@ import (
 
 	"barlitre/app/widgets"
 	"barlitre/audit/figures"
+	"barlitre/audit/pen"
 )
 
 // lift is what blocks are dragged with: as long as laying all lines anew is quick, they
@@ -21,8 +21,8 @@ type lift struct {
 	quick  bool // laying all lines is quick here
 	tried  bool
 	up     *figures.Lifted
-	still  *image.RGBA // picture of what stays
-	view   [3]float64  // zoom and place that it was drawn for
+	still  *pen.Mark  // the picture up to where what stays is drawn
+	view   [3]float64 // zoom and place that it was drawn for
 	guides [2]*canvas.Line
 }
 

@@ -46,12 +46,17 @@ func newLive(p *panel) *live {
 	return l
 }
 
-// moved brings the values at the clock in, and tells whether they take another height.
-func (l *live) moved() (grown bool) {
+// moved follows the clock, writes the values at it if they are to be read, and tells
+// whether they take another height.
+func (l *live) moved(read bool) (grown bool) {
+	if !read {
+		l.plot.MoveClock(l.p.s.ctx.Clock())
+		return false
+	}
+	l.plot.SetClock(l.p.s.ctx.Clock())
 	before := l.figure.MinSize()
 	l.figure.SetMin(fyne.NewSize(100, float32(34+19*len(l.rows()))))
 	l.figure.Refresh()
-	l.plot.SetClock(l.p.s.ctx.Clock())
 	return l.figure.MinSize() != before
 }
 

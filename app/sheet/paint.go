@@ -12,42 +12,44 @@ import (
 // paint draws the sheet at the pixel size asked for. It runs on the UI goroutine.
 func (e *editor) paint(w, h int) image.Image {
 	if e.pen == nil || e.pen.Image().Rect.Dx() != w || e.pen.Image().Rect.Dy() != h {
-		e.pen = pen.NewRaster(image.NewRGBA(image.Rect(0, 0, max(w, 1), max(h, 1))))
+		e.pen = pen.NewMosaic(w, h)
+		e.lift.still = nil
 	}
 	e.frames++
 	if e.index == e.s.active {
 		widgets.Frames.Add(1)
 	}
-	size := e.Size()
-	on := func(sh *figures.Sheet, clear bool) {
-		e.pen.Reset(e.pen.Image())
-		if clear {
-			e.pen.Clear(e.s.ctx.Palette().Card)
-		}
-		if size.Width > 0 && size.Height > 0 {
-			e.pen.Push(0, 0, float64(w)/float64(size.Width))
-			e.draw(pen.Worded(e.pen, e.s.ctx.Local), sh, clear)
-			e.pen.Pop()
-		}
-	}
-	l, view := &e.lift, [3]float64{e.zoom, e.x, e.y}
+	l, card := &e.lift, e.s.ctx.Palette().Card
 	switch {
 	case e.moved == nil:
-		on(e.sheet, true)
+		e.pen.Begin(card)
+		e.ink(e.sheet, true)
 	case l.up == nil:
-		on(e.moved, true)
+		e.pen.Begin(card)
+		e.ink(e.moved, true)
 	default:
-		if l.still == nil || len(l.still.Pix) != len(e.pen.Image().Pix) || l.view != view {
-			on(l.up.Still, true)
-			l.still = image.NewRGBA(e.pen.Image().Rect)
-			l.view = view
-			copy(l.still.Pix, e.pen.Image().Pix)
-		} else {
-			copy(e.pen.Image().Pix, l.still.Pix)
+		if view := [3]float64{e.zoom, e.x, e.y}; l.still == nil || l.view != view {
+			e.pen.Begin(card)
+			e.ink(l.up.Still, true)
+			mark := e.pen.Mark()
+			l.still, l.view = &mark, view
 		}
-		on(e.moved, false)
+		e.pen.Rewind(*l.still)
+		e.ink(e.moved, false)
 	}
+	e.pen.Flush()
 	return e.pen.Image()
+}
+
+// ink draws a sheet over what is drawn already.
+func (e *editor) ink(sh *figures.Sheet, legend bool) {
+	size := e.Size()
+	if size.Width <= 0 || size.Height <= 0 {
+		return
+	}
+	e.pen.Push(0, 0, float64(e.pen.Image().Rect.Dx())/float64(size.Width))
+	e.draw(pen.Worded(e.pen, e.s.ctx.Local), sh, legend)
+	e.pen.Pop()
 }
 
 // draw draws a sheet in units of the toolkit, with its legend where that belongs here.

@@ -116,7 +116,7 @@ func (p *panel) changed(w station.What) {
 		p.bringParts()
 		p.bringCompare()
 	}
-	if p.live.moved() || w&^station.Clock != 0 {
+	if grown := p.live.moved(w&^station.Clock != 0); grown || w&^(station.Clock|station.Reading) != 0 {
 		p.relay()
 	}
 }

@@ -87,13 +87,17 @@ func (s *Station) Changed(w station.What) {
 		s.revealSelected()
 		s.findings.follow()
 	}
-	s.bar.reload()
+	if w&^(station.Clock|station.Reading) != 0 {
+		s.bar.reload()
+	}
 	if w.Has(station.Model | station.Settings | station.Selection) {
 		s.edge.Refresh()
 		s.content.Refresh()
 	}
 	for _, e := range s.editors {
-		e.redraw()
+		if w&^(station.Clock|station.Reading) != 0 || w.Has(station.Clock) && e.state != nil {
+			e.redraw()
+		}
 	}
 	if w&station.Everything == station.Everything {
 		s.takeFocus()

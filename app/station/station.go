@@ -24,13 +24,14 @@ const (
 	Settings                   // theme, units, decimal sign, scale
 	Selection                  // another block, circuit or duty is selected
 	Advice                     // what is to be put right first, or how far the work on it is
+	Reading                    // values at the clock: with every move of it, but while it runs no more often than they can be read
 )
 
 // Has reports whether w holds x.
 func (w What) Has(x What) bool { return w&x != 0 }
 
 // Everything is what changes when another file is opened.
-const Everything = Model | Solution | Clock | Settings | Selection | Advice
+const Everything = Model | Solution | Clock | Settings | Selection | Advice | Reading
 
 // Station is one page of the job. All methods are called on the UI goroutine.
 type Station interface {

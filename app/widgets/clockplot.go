@@ -36,6 +36,7 @@ type ClockPlot struct {
 	mark    *canvas.Raster
 	flags   []*flag
 	drawn   *pen.Raster
+	reads   bool // the values beside the line are of where it is
 	held    bool
 	focused bool
 	touched *heldPoint
@@ -80,8 +81,17 @@ func newFlag() *flag {
 
 // SetClock moves the clock.
 func (c *ClockPlot) SetClock(t float64) {
+	if t != c.clock || !c.reads {
+		c.clock, c.reads = t, true
+		c.follow()
+		c.arrange()
+	}
+}
+
+// MoveClock moves the line of the clock, and takes the values beside it along as they are.
+func (c *ClockPlot) MoveClock(t float64) {
 	if t != c.clock {
-		c.clock = t
+		c.clock, c.reads = t, false
 		c.follow()
 		c.arrange()
 	}
@@ -166,17 +176,24 @@ func (c *ClockPlot) arrange() {
 	c.mark.Resize(fyne.NewSize(8*k, 6*k))
 	right := float32(a.X+a.W) * k
 	for i := range a.Lanes {
-		text := ""
-		if c.Value != nil {
-			text = c.Value(i, c.clock)
+		f := c.flags[i]
+		text := f.text.Text
+		if c.reads {
+			text = ""
+			if c.Value != nil {
+				text = c.Value(i, c.clock)
+			}
 		}
-		c.flags[i].place(text, p, x, right, float32(a.Lanes[i].Y+2)*k)
-	}
-	text := ""
-	if c.Format != nil {
-		text = c.Format(c.clock)
+		f.place(text, p, x, right, float32(a.Lanes[i].Y+2)*k)
 	}
 	f := c.flags[len(c.flags)-1]
+	text := f.text.Text
+	if c.reads {
+		text = ""
+		if c.Format != nil {
+			text = c.Format(c.clock)
+		}
+	}
 	f.place(text, p, x, right, bottom+9*k)
 	f.text.Color = p.Danger
 	canvas.Refresh(c)
@@ -262,6 +279,7 @@ func (c *ClockPlot) MinSize() fyne.Size {
 func (c *ClockPlot) Resize(s fyne.Size) {
 	if s != c.Size() {
 		c.BaseWidget.Resize(s)
+		c.reads = true
 		c.lay()
 		c.arrange()
 	}
@@ -269,6 +287,7 @@ func (c *ClockPlot) Resize(s fyne.Size) {
 
 // Refresh draws anew.
 func (c *ClockPlot) Refresh() {
+	c.reads = true
 	c.lay()
 	c.arrange()
 	c.raster.Refresh()

@@ -33,12 +33,11 @@ type Figure struct {
 	Tapped   func(part Part, x, y float64) // part.Name == "" beside all parts
 	Hover    func(part Part, inside bool)
 	Ground   func() color.Color
-	Under    func(p pen.Pen, w, h float64) // drawn below, and kept as long as only RefreshOver asks for a frame
+	Over     []fyne.CanvasObject // lie on the figure; set before it is shown
 	draw     Draw
 	min      fyne.Size
 	raster   *canvas.Raster
 	pen      *pen.Raster
-	kept     *image.RGBA // what lies below
 	parts    []Part
 	over     string
 	overPart Part
@@ -68,12 +67,7 @@ func (f *Figure) paint(w, h int) image.Image {
 	}
 	f.pen.Reset(f.pen.Image())
 	size := f.Size()
-	below := f.kept != nil && f.kept.Rect == f.pen.Image().Rect
-	if below {
-		copy(f.pen.Image().Pix, f.kept.Pix)
-	} else {
-		f.clear()
-	}
+	f.clear()
 	if size.Width <= 0 || size.Height <= 0 {
 		return f.pen.Image()
 	}
@@ -81,11 +75,6 @@ func (f *Figure) paint(w, h int) image.Image {
 	// on a smaller sheet, and enlarged.
 	scale := float64(Scale())
 	f.pen.Push(0, 0, float64(w)/float64(size.Width)*scale)
-	if f.Under != nil && !below {
-		f.Under(f.pen, float64(size.Width)/scale, float64(size.Height)/scale)
-		f.kept = image.NewRGBA(f.pen.Image().Rect)
-		copy(f.kept.Pix, f.pen.Image().Pix)
-	}
 	f.parts = f.draw(f.pen, float64(size.Width)/scale, float64(size.Height)/scale)
 	f.pen.Pop()
 	for i := range f.parts {
@@ -168,13 +157,19 @@ func (f *Figure) MinSize() fyne.Size {
 
 // Refresh draws anew.
 func (f *Figure) Refresh() {
-	f.kept = nil
 	f.raster.Refresh()
 	f.BaseWidget.Refresh()
 }
 
-// RefreshOver draws anew, but for what lies below.
-func (f *Figure) RefreshOver() { f.raster.Refresh() }
-
 // CreateRenderer is for the toolkit.
-func (f *Figure) CreateRenderer() fyne.WidgetRenderer { return widget.NewSimpleRenderer(f.raster) }
+func (f *Figure) CreateRenderer() fyne.WidgetRenderer { return &figureRenderer{f} }
+
+type figureRenderer struct{ f *Figure }
+
+func (r *figureRenderer) Layout(size fyne.Size) { r.f.raster.Resize(size) }
+func (r *figureRenderer) MinSize() fyne.Size    { return r.f.MinSize() }
+func (r *figureRenderer) Refresh()              {}
+func (r *figureRenderer) Destroy()              {}
+func (r *figureRenderer) Objects() []fyne.CanvasObject {
+	return append([]fyne.CanvasObject{r.f.raster}, r.f.Over...)
+}

@@ -233,8 +233,10 @@ func TestHostileInput(t *testing.T) {
 	// Per bad number 9 shapes and texts, a circle under a bad Push and a clip; then
 	// a circle under scale 0, Pop and Unclip. A width of −∞ is merely no outline.
 	const want = 4*11 + 3 - 1
-	r, rec := raster(100, 100), NewRecorder()
+	r, rec, m := raster(100, 100), NewRecorder(), NewMosaic(100, 100)
 	hostile(r)
+	hostile(m)
+	m.Flush()
 	hostile(rec)
 	f := NewPDF("L", day)
 	f.AddPage()
@@ -247,7 +249,7 @@ func TestHostileInput(t *testing.T) {
 	if bytes.Contains(b.Bytes(), []byte("NaN")) || bytes.Contains(b.Bytes(), []byte("Inf ")) {
 		t.Error("a number that is none is in the PDF")
 	}
-	for name, n := range map[string]int{"raster": r.Skipped(), "recorder": rec.Skipped(), "pdf": d.Skipped()} {
+	for name, n := range map[string]int{"raster": r.Skipped(), "recorder": rec.Skipped(), "mosaic": m.Skipped(), "pdf": d.Skipped()} {
 		if n != want {
 			t.Errorf("%s skipped %d calls, want %d", name, n, want)
 		}

@@ -5,6 +5,7 @@ import (
 	"image/color"
 	"image/draw"
 	"math"
+	"sync"
 
 	"golang.org/x/image/vector"
 )
@@ -19,6 +20,10 @@ type Raster struct {
 	clips []image.Rectangle
 	z     vector.Rasterizer
 	poly  [2][]Pt // scratch of the polygon clipper
+	work  []Pt    // scratch of the strokes
+	polys [][]Pt
+
+	colour image.Uniform
 }
 
 var _ Pen = (*Raster)(nil)
@@ -44,6 +49,11 @@ func (r *Raster) Clear(c color.NRGBA) {
 	draw.Draw(r.img, r.img.Bounds(), image.NewUniform(c), image.Point{}, draw.Src)
 }
 
+// touched returns the pixels a rectangle touches.
+func touched(a, b Pt) image.Rectangle {
+	return image.Rect(int(math.Floor(a.X+1e-6)), int(math.Floor(a.Y+1e-6)), int(math.Ceil(b.X-1e-6)), int(math.Ceil(b.Y-1e-6)))
+}
+
 // TextWidth returns the width of s in user units.
 func (r *Raster) TextWidth(s string, size float64, bold bool) float64 {
 	return TextWidth(s, size, bold)
@@ -53,11 +63,9 @@ func (r *Raster) TextWidth(s string, size float64, bold bool) float64 {
 func (r *Raster) ClipRect(x, y, w, h float64) {
 	r.clips = append(r.clips, r.clip)
 	a, b := r.at(Pt{x, y}), r.at(Pt{x + w, y + h})
-	if !r.okPts(0, a, b) {
-		return
+	if r.okPts(0, a, b) {
+		r.clip = r.clip.Intersect(touched(a, b))
 	}
-	r.clip = r.clip.Intersect(image.Rect(int(math.Floor(a.X+1e-6)), int(math.Floor(a.Y+1e-6)),
-		int(math.Ceil(b.X-1e-6)), int(math.Ceil(b.Y-1e-6))))
 }
 
 // Unclip ends the last ClipRect.
@@ -79,13 +87,16 @@ func (r *Raster) Polyline(p []Pt, closed bool, fill color.NRGBA, s Stroke) {
 	r.path(pts, closed, fill, st)
 }
 
+// curveTol is how far a curve may be left by what is drawn of it [px].
+const curveTol = 0.1
+
 // Bezier implements Pen.
 func (r *Raster) Bezier(start Pt, pieces []Cubic, closed bool, fill color.NRGBA, s Stroke) {
 	a, c, st := r.at(start), r.curve(pieces), r.stroke(s)
 	if !r.okCurve(st.W, a, c) {
 		return
 	}
-	r.path(flatten(a, c, 0.1), closed, fill, st)
+	r.path(flatten(a, c, curveTol), closed, fill, st)
 }
 
 // Circle implements Pen.
@@ -125,7 +136,7 @@ func (r *Raster) Arc(c Pt, radius, a0, a1 float64, s Stroke) {
 func (r *Raster) path(pts []Pt, closed bool, fill color.NRGBA, st Stroke) {
 	if fill.A > 0 && len(pts) > 2 {
 		if box, ok := rectangle(pts); ok {
-			draw.Draw(r.img, box.Intersect(r.clip), image.NewUniform(fill), image.Point{}, draw.Over)
+			r.wash(box, fill, 1)
 		} else {
 			r.fill(fill, pts)
 		}
@@ -165,14 +176,30 @@ func wholePixels(a, b float64) (int, int) {
 
 // circle returns the points of a circle in the turning sense strokes use.
 func circle(c Pt, rad float64) []Pt {
-	n := int(max(8, min(400, 10*math.Sqrt(rad)))) // chords leave it by 0.05 px
+	n := int(max(8, min(mostChords, 10*math.Sqrt(rad)))) // chords leave it by 0.05 px
 	out := make([]Pt, n)
-	for i := range out {
-		sin, cos := math.Sincos(-2 * math.Pi * float64(i) / float64(n))
-		out[i] = Pt{c.X + rad*cos, c.Y + rad*sin}
+	for i, q := range unitCircles[n]() {
+		out[i] = Pt{c.X + rad*q.X, c.Y + rad*q.Y}
 	}
 	return out
 }
+
+const mostChords = 400
+
+// unitCircles are the points of a circle of radius 1 by their number, made when first asked for.
+var unitCircles = func() (list [mostChords + 1]func() []Pt) {
+	for n := range list {
+		list[n] = sync.OnceValue(func() []Pt {
+			out := make([]Pt, n)
+			for i := range out {
+				sin, cos := math.Sincos(-2 * math.Pi * float64(i) / float64(n))
+				out[i] = Pt{cos, sin}
+			}
+			return out
+		})
+	}
+	return list
+}()
 
 // fill paints the union of polygons that turn the same way; one that turns the
 // other way is a hole. Work is limited to the pixels they touch.
@@ -200,7 +227,8 @@ func (r *Raster) fill(c color.NRGBA, polys ...[]Pt) {
 			r.z.ClosePath()
 		}
 	}
-	r.z.Draw(r.img, box, image.NewUniform(c), image.Point{})
+	r.colour.C = c
+	r.z.Draw(r.img, box, &r.colour, image.Point{})
 }
 
 // bounds returns the pixels the points span.

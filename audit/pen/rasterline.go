@@ -1,6 +1,11 @@
 package pen
 
-import "math"
+import (
+	"image"
+	"image/color"
+	"image/draw"
+	"math"
+)
 
 // chunk is how many pieces of an opaque line share one rasteriser pass: few
 // enough that the box they span stays small, many enough to save passes.
@@ -35,39 +40,98 @@ func (r *Raster) solid(pts []Pt, closed, square bool, st Stroke) {
 		size = n
 	}
 	h := st.W / 2
+	bars := square && st.C.A == 255 && st.W == math.Round(st.W)
 	for i := 0; i < n; i += size {
 		m := min(i+size, n)
-		var polys [][]Pt
 		box := bounds(pts[i : m+1]).Inset(-int(h) - 2)
 		if box.Intersect(r.clip).Empty() {
 			continue
 		}
+		r.work, r.polys = r.work[:0], r.polys[:0]
 		for j := i; j < m; j++ {
 			first, last := j == 0 && !closed, j == n-1 && !closed
-			polys = append(polys, piece(pts[j], pts[j+1], h, square && !first, square && !last))
+			if bars {
+				r.bar(pts[j], pts[j+1], h, !first, !last, st.C)
+				continue
+			}
+			r.piece(pts[j], pts[j+1], h, square && !first, square && !last)
 			if !square && !last {
-				polys = append(polys, circle(pts[j+1], h))
+				r.polys = append(r.polys, circle(pts[j+1], h))
 			}
 		}
-		r.fill(st.C, polys...)
+		if !bars {
+			r.fill(st.C, r.polys...)
+		}
 	}
 }
 
-// piece returns the rectangle of half width h about the line from a to b,
-// longer by h at the ends asked for.
-func piece(a, b Pt, h float64, longA, longB bool) []Pt {
+// lengthened is the line from a to b, longer by h at the ends asked for, and its direction
+// times h; ok is false for one without length.
+func lengthened(a, b Pt, h float64, longA, longB bool) (p, q, u Pt, ok bool) {
 	l := math.Hypot(b.X-a.X, b.Y-a.Y)
 	if l == 0 {
-		return nil
+		return a, b, u, false
 	}
-	u := Pt{(b.X - a.X) / l * h, (b.Y - a.Y) / l * h}
+	u = Pt{(b.X - a.X) / l * h, (b.Y - a.Y) / l * h}
 	if longA {
 		a = Pt{a.X - u.X, a.Y - u.Y}
 	}
 	if longB {
 		b = Pt{b.X + u.X, b.Y + u.Y}
 	}
-	return []Pt{{a.X - u.Y, a.Y + u.X}, {b.X - u.Y, b.Y + u.X}, {b.X + u.Y, b.Y - u.X}, {a.X + u.Y, a.Y - u.X}}
+	return a, b, u, true
+}
+
+// piece adds the rectangle of half width h about the line from a to b to the polygons at
+// hand.
+func (r *Raster) piece(a, b Pt, h float64, longA, longB bool) {
+	a, b, u, ok := lengthened(a, b, h, longA, longB)
+	if !ok {
+		return
+	}
+	n := len(r.work)
+	r.work = append(r.work, Pt{a.X - u.Y, a.Y + u.X}, Pt{b.X - u.Y, b.Y + u.X}, Pt{b.X + u.Y, b.Y - u.X}, Pt{a.X + u.Y, a.Y - u.X})
+	r.polys = append(r.polys, r.work[n:len(r.work):len(r.work)])
+}
+
+// bar is piece for an upright or level line in one opaque colour whose long edges lie
+// between pixels: what it covers are whole pixels, but for a share of those at its ends.
+func (r *Raster) bar(a, b Pt, h float64, longA, longB bool, c color.NRGBA) {
+	a, b, u, ok := lengthened(a, b, h, longA, longB)
+	if !ok {
+		return
+	}
+	x0, x1 := min(a.X, b.X)-math.Abs(u.Y), max(a.X, b.X)+math.Abs(u.Y)
+	y0, y1 := min(a.Y, b.Y)-math.Abs(u.X), max(a.Y, b.Y)+math.Abs(u.X)
+	if a.Y == b.Y {
+		lo, hi := int(math.Round(y0)), int(math.Round(y1))
+		r.along(x0, x1, c, func(i, j int) image.Rectangle { return image.Rect(i, lo, j, hi) })
+	} else {
+		lo, hi := int(math.Round(x0)), int(math.Round(x1))
+		r.along(y0, y1, c, func(i, j int) image.Rectangle { return image.Rect(lo, i, hi, j) })
+	}
+}
+
+// along paints the pixels from one place to another, those at the ends by their share.
+func (r *Raster) along(from, to float64, c color.NRGBA, pixels func(i, j int) image.Rectangle) {
+	i, j := int(math.Ceil(from-1e-6)), int(math.Floor(to+1e-6))
+	if i > j { // within one pixel
+		r.wash(pixels(j, i), c, to-from)
+		return
+	}
+	r.wash(pixels(i-1, i), c, float64(i)-from)
+	r.wash(pixels(i, j), c, 1)
+	r.wash(pixels(j, j+1), c, to-float64(j))
+}
+
+// wash paints a share of a colour over whole pixels.
+func (r *Raster) wash(box image.Rectangle, c color.NRGBA, share float64) {
+	if box = box.Intersect(r.clip); box.Empty() || share < 1.0/512 {
+		return
+	}
+	c.A = uint8(math.Round(float64(c.A) * min(share, 1)))
+	r.colour.C = c
+	draw.Draw(r.img, box, &r.colour, image.Point{}, draw.Over)
 }
 
 // axisParallel reports whether every piece is horizontal or vertical.

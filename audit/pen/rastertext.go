@@ -43,20 +43,36 @@ func (r *Raster) Text(p Pt, s string, size float64, c color.NRGBA, al Align, bol
 		r.outlineText(Pt{x, q.Y}, s, px, 0, c, f)
 		return
 	}
+	r.colour.C = c
+	y := int(math.Round(q.Y)) // letters of a line share a pixel row
+	for _, g := range f.set(s, x, px) {
+		at := g.img.Rect.Add(image.Pt(g.x, y))
+		if to := at.Intersect(r.clip); !to.Empty() {
+			draw.DrawMask(r.img, to, &r.colour, image.Point{}, g.img, g.img.Rect.Min.Add(to.Min.Sub(at.Min)), draw.Over)
+		}
+	}
+}
+
+// setGlyph is the picture of a letter and the pixel column it stands at.
+type setGlyph struct {
+	img *image.Alpha
+	x   int
+}
+
+// set finds the pictures of the letters of a cleaned text that begins at x. They are
+// drawn without the lock, so that several pens can write at once.
+func (f *face) set(s string, x, px float64) []setGlyph {
 	f.mu.Lock()
 	defer f.mu.Unlock()
-	src := image.NewUniform(c)
-	y := int(math.Round(q.Y)) // letters of a line share a pixel row
+	out := make([]setGlyph, 0, len(s))
 	for _, ch := range s {
 		whole := math.Floor(x)
-		m := f.mask(f.glyph(ch), px, uint8((x-whole)*subPixels))
-		if m.img != nil {
-			at := m.img.Rect.Add(image.Pt(int(whole), y))
-			to := at.Intersect(r.clip)
-			draw.DrawMask(r.img, to, src, image.Point{}, m.img, m.img.Rect.Min.Add(to.Min.Sub(at.Min)), draw.Over)
+		if m := f.mask(f.glyph(ch), px, uint8((x-whole)*subPixels)); m.img != nil {
+			out = append(out, setGlyph{m.img, int(whole)})
 		}
 		x += f.width(ch) * px
 	}
+	return out
 }
 
 // RotatedText implements Pen.

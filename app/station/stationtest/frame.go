@@ -73,8 +73,11 @@ func (f *Frame) Theme(dark bool, scale float32) {
 }
 
 // SetClock, SetDuty and Select tell the station.
-func (f *Frame) SetClock(t float64) { f.Time = t; f.Station.Changed(station.Clock) }
-func (f *Frame) SetDuty(i int)      { f.At = i; f.Station.Changed(station.Selection | station.Clock) }
+func (f *Frame) SetClock(t float64) { f.Time = t; f.Station.Changed(station.Clock | station.Reading) }
+func (f *Frame) SetDuty(i int) {
+	f.At = i
+	f.Station.Changed(station.Selection | station.Clock | station.Reading)
+}
 
 // Pick tells the station as the frame does.
 func (f *Frame) Pick(circuit string) {
