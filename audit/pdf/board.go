@@ -13,7 +13,7 @@ import (
 )
 
 // The frame of a drawing [mm]: 20 mm on the side that is filed, 10 mm elsewhere
-// (ISO 5457, from memory).
+// (ISO 5457, as public guides to drawing quote it).
 const (
 	frameLeft  = 20.0
 	frameOther = 10.0
@@ -119,8 +119,8 @@ func (b *boards) toldOf(one *board) []string {
 }
 
 // The title block [mm]: no wider than 180 mm, at the lower right corner, with the fields
-// of ISO 7200 (from memory): legal owner, identification number, date of issue, sheet,
-// title, approval, creator and type of document are asked for there, revision is not.
+// of ISO 7200:2004, compared with public lists of them: legal owner, identification number, date of issue, sheet,
+// title, approval, creator and type of document must be there, revision may.
 const (
 	blockWidth  = 180.0
 	blockHeight = 34.0
