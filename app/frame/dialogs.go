@@ -42,6 +42,7 @@ func (f *Frame) leave(then func()) {
 func (f *Frame) quit() {
 	f.leave(func() {
 		f.closed = true
+		f.status.clear()
 		f.player.stop()
 		size := f.win.Canvas().Size()
 		f.settings.width, f.settings.height = size.Width, size.Height

@@ -3,9 +3,9 @@
 package frame
 
 import (
-	"errors"
 	"math"
 	"strings"
+	"time"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
@@ -48,7 +48,7 @@ type Frame struct {
 	verdict *widgets.Figure
 	rail    *rail
 	strip   *strip
-	status  *widget.Label
+	status  *status
 	body    *fyne.Container
 	menu    menus
 	boxes   []*closable // dialogs, the last on top
@@ -96,14 +96,13 @@ func (f *Frame) build() {
 	f.verdict = f.newVerdict()
 	f.rail = newRail(f)
 	f.strip = newStrip(f)
-	f.status = widgets.Name(widget.NewLabel(""), "frame.status")
-	f.status.Truncation = fyne.TextTruncateEllipsis
+	f.status = newStatus()
 	f.body = container.NewStack()
 	for i := range f.stations {
 		f.stale[i] = station.Everything
 	}
 	f.win.SetContent(widgets.NewTips(container.New(&page{f}, f.verdict, widget.NewSeparator(), f.rail.content,
-		container.NewScroll(f.body), widget.NewSeparator(), f.strip.content, f.status)))
+		container.NewScroll(f.body), widget.NewSeparator(), f.strip.content, f.status.Label)))
 	f.buildMenu()
 	f.shortcuts()
 	f.show(0)
@@ -113,6 +112,7 @@ func (f *Frame) build() {
 // spends no time on them.
 func (f *Frame) show(i int) {
 	if i != f.current {
+		f.status.acted(time.Now())
 		f.win.Canvas().Unfocus() // the keys would go to what is no longer seen
 	}
 	f.current = i
@@ -166,6 +166,7 @@ func (f *Frame) told(e document.Event) {
 	case document.Opened:
 		f.reset()
 	case document.Edited:
+		f.status.acted(time.Now())
 		f.keepInRange()
 		f.changed(station.Model)
 	case document.Solved, document.Warmed:
@@ -262,6 +263,7 @@ func (f *Frame) SetDuty(i int) {
 	if file := f.doc.File(); file == nil || i == f.duty || i < 0 || i >= len(file.Duties) {
 		return
 	}
+	f.status.acted(time.Now())
 	f.duty = i
 	f.clock = f.firstMotion()
 	f.changed(station.Selection | station.Clock | station.Reading)
@@ -275,6 +277,7 @@ func (f *Frame) Select(circuit int, block string) {
 	if circuit == f.circuit && block == f.block {
 		return
 	}
+	f.status.acted(time.Now())
 	f.circuit, f.block = circuit, block
 	w := station.Selection
 	if file := f.doc.File(); circuit >= 0 && circuit < len(file.Circuits) && f.pick(file.Circuits[circuit].Name) {
@@ -330,27 +333,6 @@ func (f *Frame) Go(name string) {
 			p.ShowPage(page)
 		}
 	}
-}
-
-// Say shows a short message below the strip.
-func (f *Frame) Say(text string) {
-	f.status.Importance = widget.MediumImportance
-	f.status.SetText(text)
-}
-
-// Fail shows what went wrong, where it cannot be missed.
-func (f *Frame) Fail(err error) {
-	if err == nil {
-		return
-	}
-	text := err.Error()
-	var fault *document.Fault
-	if errors.As(err, &fault) {
-		text = fault.Error()
-	}
-	f.status.Importance = widget.DangerImportance
-	f.status.SetText("⚠ " + strings.ReplaceAll(text, "\n", " "))
-	f.tellFailure(text)
 }
 
 // Show opens the window and returns when it is closed.

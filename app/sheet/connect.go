@@ -1,10 +1,12 @@
 package sheet
 
 import (
+	"slices"
 	"strings"
 
 	"barlitre/audit"
 	"barlitre/audit/figures"
+	"barlitre/circuit"
 )
 
 // lineEnd is what a new line begins or ends at: a port, else a line that is drawn, by its
@@ -12,6 +14,7 @@ import (
 type lineEnd struct {
 	port *figures.SheetPort
 	net  int
+	at   [2]float64 // where on the line, on the grid [M]
 }
 
 func (a lineEnd) any() bool { return a.port != nil || a.net >= 0 }
@@ -50,7 +53,39 @@ func (e *editor) joining(a, b lineEnd) (name string, do func(f *audit.File) erro
 	case a.port == nil:
 		a, b = b, a
 	}
-	return "Connect " + a.port.String(), func(f *audit.File) error { return f.ConnectLine(e.name, a.port.String(), first(b.net)) }
+	return "Connect " + a.port.String(), func(f *audit.File) error {
+		if err := f.ConnectLine(e.name, a.port.String(), first(b.net)); err != nil {
+			return err
+		}
+		e.branchAt(f, a.port.PortRef, b)
+		return nil
+	}
+}
+
+// branchAt lets the branch to a port that was just put on a line begin where it was pulled
+// out of the line, or let go on it. Where that cannot be, the line is laid as any other.
+func (e *editor) branchAt(f *audit.File, port circuit.PortRef, on lineEnd) {
+	if e.joined(port) {
+		return // two lines become one
+	}
+	runs, ok := e.sheet.Pull(on.net, on.at, port)
+	c := f.Circuit(e.name)
+	if !ok || c == nil {
+		return
+	}
+	drawn := c.DrawnWith(port)
+	var lines []int
+	for i, l := range c.Lines {
+		if slices.ContainsFunc(l.Ports, func(p circuit.PortRef) bool {
+			b := c.Block(p.Block)
+			return b != nil && b.Kind != "tank" && slices.Contains(drawn, p)
+		}) {
+			lines = append(lines, i)
+		}
+	}
+	if g := *f; g.Bend(e.name, lines, runs) == nil {
+		*f = g
+	}
 }
 
 // joinSays tells what joining two ends would do, and whether it may be done: it is tried

@@ -108,15 +108,19 @@ func (e *editor) show(at int, c *circuit.Circuit) {
 	other := c == nil || e.name != c.Name
 	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.ports, e.name = at, c, nil, nil, nil, nil, nil, nil, ""
 	if c == nil {
+		e.laying.bare = nil
 		e.zoom, e.x, e.y, e.fitted = fitMost*float64(widgets.Scale()), 0, 0, true // where a first block goes
 		return
 	}
 	e.name, e.laying.ready = c.Name, nil
-	if large(c) {
+	unlaid := large(c) && (other || e.laying.bare != nil)
+	if e.laying.bare = nil; large(c) {
 		if other {
 			rough = nil
 		}
-		e.plain = rough.Rough(c)
+		if e.plain = rough.Rough(c); unlaid {
+			e.laying.bare = e.plain.Bare()
+		}
 	} else {
 		e.plain = before.Next(c)
 		e.laying.exact = nil

@@ -116,6 +116,77 @@ func TestPullABranch(t *testing.T) {
 	b.undone(before, "Connect "+free)
 }
 
+// branches counts the pieces of lines that end at a point.
+func (b *bench) branches(sheet int, at [2]float64) (n int) {
+	e := b.s.editors[sheet]
+	for net := range e.sheet.Nets() {
+		for _, p := range e.sheet.Pieces(net) {
+			if a, c, _ := e.sheet.PieceEnds(p); a == at || c == at {
+				n++
+			}
+		}
+	}
+	return n
+}
+
+// A branch begins where it was pulled out of the line, and ends where it was let go on one:
+// at the point of the grid there, wherever that is on the line. The line stays as it is; one
+// undo takes all of it back, to the byte.
+func TestBranchBeginsWhereItIsPulled(t *testing.T) {
+	for _, from := range []func(*testing.T) *bench{drawing, three} {
+		for _, back := range []bool{false, true} {
+			b := from(t)
+			e := b.s.editors[0]
+			if b.line(0, "P1.P") == nil {
+				if err := b.doc.Connect(e.name, "P1.P", "RV1.P"); err != nil {
+					t.Fatal(err)
+				}
+			}
+			id, err := b.doc.AddBlock(e.name, "accumulator", [2]float64{0, -40})
+			if err != nil {
+				t.Fatal(err)
+			}
+			b.pump()
+			b.s.fitAll()
+			free := ""
+			for _, p := range e.ports {
+				if p.Block == id {
+					free = p.String()
+				}
+			}
+			before := b.doc.File().Bytes()
+			net, _ := b.lineOf(0, "P1.P")
+			tried := 0
+			for _, p := range e.sheet.Pieces(net) {
+				a, c, _ := e.sheet.PieceEnds(p)
+				for k := 1; k < 4; k++ {
+					at, _ := e.sheet.OnLine(net, a[0]+(c[0]-a[0])*float64(k)/4, a[1]+(c[1]-a[1])*float64(k)/4)
+					on := e.onSheet(at[0], at[1])
+					if b.branches(0, at) != 0 || e.portAt(on) != nil {
+						continue // a corner, or at a port
+					}
+					on = on.AddXY(0.2, -0.3) // nobody hits the grid
+					to := b.port(0, free)
+					if back {
+						on, to = to, on
+					}
+					b.drag(0, on, to, desktop.MouseButtonPrimary, 0)
+					if got := b.branches(0, at); got != 3 {
+						t.Errorf("pulled at %v (back %v): %d pieces end there; bends %s", at, back, got, b.bends(0))
+					}
+					if tried++; tried == 3 {
+						b.picture("branch-where-pulled")
+					}
+					b.undone(before, "Connect "+free)
+				}
+			}
+			if tried < 4 {
+				t.Errorf("only %d points of the line were tried", tried)
+			}
+		}
+	}
+}
+
 // A line that is dropped on another line joins the two; what may not be is refused in
 // words while the button is still down.
 func TestLineOnLine(t *testing.T) {

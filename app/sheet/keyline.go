@@ -93,7 +93,7 @@ func (j *keyLine) show() {
 		w.ring(0, &p)
 		e.hover.tell(at, e.portLines(p.PortRef)...)
 	} else {
-		text, fine := e.joinSays(lineEnd{j.from, -1}, lineEnd{&p, -1})
+		text, fine := e.joinSays(lineEnd{port: j.from, net: -1}, lineEnd{port: &p, net: -1})
 		w.line.Position1, w.line.Position2 = e.onScreen(*j.from), at
 		w.line.Show()
 		w.ring(0, j.from)
@@ -117,7 +117,7 @@ func (j *keyLine) key(k fyne.KeyName) bool {
 			j.take()
 			return true
 		}
-		from, to := lineEnd{j.from, -1}, lineEnd{&j.ports[j.at], -1}
+		from, to := lineEnd{port: j.from, net: -1}, lineEnd{port: &j.ports[j.at], net: -1}
 		j.end()
 		j.e.connect(from, to)
 	case fyne.KeyTab:

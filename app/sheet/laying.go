@@ -9,12 +9,14 @@ import (
 )
 
 // manyBlocks is from how many blocks on lines and labels are laid behind the window. Until
-// they are, the sheet has plain elbows where lines must change.
+// they are, the sheet has plain elbows where lines must change, and one that was just opened
+// has no lines and says so.
 const manyBlocks = 80
 
 // laying is what is laid behind the window.
 type laying struct {
 	busy  bool
+	bare  *figures.Sheet // what is shown of a circuit of which nothing was laid yet
 	exact *figures.Sheet // the last one that was laid in full, without results
 	ready func()         // what was laid while a gesture was under way
 }
@@ -51,6 +53,9 @@ func (e *editor) laidBehind(c *circuit.Circuit, run *audit.CircuitRun, exact, fu
 	l := &e.laying
 	l.busy, l.exact = false, exact
 	if e.drawn != c || e.labels != run {
+		if e.drawn == c && l.bare != nil {
+			e.showLaid(c, exact, exact) // the lines; labels for the results follow
+		}
 		if large(e.drawn) {
 			e.layBehind()
 		}
@@ -75,6 +80,7 @@ func (e *editor) showLaid(c *circuit.Circuit, exact, full *figures.Sheet) {
 		return
 	}
 	kept := e.keep(c)
+	e.laying.bare = nil
 	e.selectLine(-1)
 	e.plain, e.sheet = exact, full
 	e.boxes, e.ports = boxesOf(full), full.Ports()

@@ -3,11 +3,13 @@
 package sheet
 
 import (
+	"strings"
 	"testing"
 
 	"fyne.io/fyne/v2"
 
 	"barlitre/audit/figures"
+	"barlitre/audit/pen"
 )
 
 // Drawn is what a sheet tells of itself: where its lines and blocks are.
@@ -64,6 +66,37 @@ func TestLargeMoveLaysBehind(t *testing.T) {
 				t.Fatalf("piece %d is %v, laid anew %v", i, got[i], full[i])
 			}
 		}
+	}
+}
+
+// A large circuit that was just opened has its blocks, and says that its lines are being laid,
+// until they are; no plain elbow is ever seen then.
+func TestLargeOpensWithoutLines(t *testing.T) {
+	b := openLarge(t, 90)
+	e := b.s.editors[0]
+	shapes := func() (lines int, says bool) {
+		r := pen.NewRecorder()
+		e.draw(r, e.sheet, false)
+		for _, t := range r.Boxes() {
+			says = says || strings.HasPrefix(t.Text, "Laying the lines")
+		}
+		return len(r.Shapes()), says
+	}
+	all, says := shapes()
+	if says || e.laying.bare != nil {
+		t.Error("laid lines are said to be laid")
+	}
+	c := e.drawn
+	e.show(-1, nil)
+	e.show(0, c)
+	bare, says := shapes()
+	if !says || bare == 0 || bare > all-e.sheet.Nets() {
+		t.Errorf("opened: %d shapes of %d, says so: %v", bare, all, says)
+	}
+	b.picture("large-opening")
+	b.solved()
+	if now, says := shapes(); says || now < all-5 {
+		t.Errorf("laid: %d shapes of %d, says that it is being laid: %v", now, all, says)
 	}
 }
 

@@ -174,11 +174,17 @@ func (e *editor) wireTo(at fyne.Position) {
 	w := &e.wire
 	from, to := e.wireEnds(*g)
 	w.line.Position1, w.line.Position2 = g.from, at
-	if g.port != nil {
+	switch {
+	case g.port != nil:
 		w.line.Position1 = e.onScreen(*g.port)
+	case from.net >= 0:
+		w.line.Position1 = e.onSheet(from.at[0], from.at[1])
 	}
-	if to.port != nil {
+	switch {
+	case to.port != nil:
 		w.line.Position2 = e.onScreen(*to.port)
+	case to.net >= 0 && !from.is(to):
+		w.line.Position2 = e.onSheet(to.at[0], to.at[1])
 	}
 	w.line.Show()
 	w.ring(0, g.port)
@@ -193,14 +199,25 @@ func (e *editor) wireTo(at fyne.Position) {
 
 // wireEnds are what a drawn line begins at, and would end at where it is now.
 func (e *editor) wireEnds(g gesture) (from, to lineEnd) {
-	from, to = lineEnd{g.port, g.net}, lineEnd{e.portAt(g.at), -1}
+	from, to = lineEnd{port: g.port, net: g.net}, lineEnd{port: e.portAt(g.at), net: -1}
 	if g.port != nil {
 		from.net = -1
 	}
 	if to.port == nil {
 		_, to.net, _ = e.hit(g.at)
 	}
+	from.at, to.at = e.onLine(from.net, g.from), e.onLine(to.net, g.at)
 	return from, to
+}
+
+// onLine is the point of a drawn line nearest to a place on screen, on the grid [M].
+func (e *editor) onLine(net int, p fyne.Position) [2]float64 {
+	if e.sheet == nil || net < 0 {
+		return [2]float64{}
+	}
+	x, y := e.at(p)
+	at, _ := e.sheet.OnLine(net, x, y)
+	return at
 }
 
 // endWire joins what a line began at with what is under the pointer.

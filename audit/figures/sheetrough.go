@@ -42,6 +42,16 @@ func (before *Sheet) Rough(c *circuit.Circuit) *Sheet {
 	return s
 }
 
+// Bare is the sheet without its lines and their labels.
+func (s *Sheet) Bare() *Sheet {
+	out := *s
+	out.veil = newVeil()
+	for i := range s.nets {
+		out.veil.nets[i] = true
+	}
+	return &out
+}
+
 // find returns the number of a net with the same ports in the same places, −1 for none.
 func (r *routing) find(n drawing.Net) int {
 	if r == nil {

@@ -29,6 +29,27 @@ type Route struct {
 	Through  bool    // passes through a block or along another net, for want of a way round
 }
 
+// From lists the segments of a route without branches in their order from one of its ends
+// on, each in that direction; nil if the route does not begin there.
+func (r Route) From(at Pt) [][2]Pt {
+	var out [][2]Pt
+	used := make([]bool, len(r.Segments))
+	for on := true; on; {
+		on = false
+		for i, g := range r.Segments {
+			if used[i] || g[0] != at && g[1] != at {
+				continue
+			}
+			if g[0] != at {
+				g[0], g[1] = g[1], g[0]
+			}
+			used[i], on, at = true, true, g[1]
+			out = append(out, g)
+		}
+	}
+	return out
+}
+
 // Costs of a route, in half modules of line length. A bend is dearer than a
 // small detour, a crossing about as dear as a bend; whatever makes a drawing
 // ambiguous (a corner on another net, two nets on one line) is far dearer, and

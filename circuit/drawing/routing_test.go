@@ -292,3 +292,41 @@ func TestSegmentFlowsBalanceAtEveryPoint(t *testing.T) {
 		t.Error("flows that do not fit the ports were accepted")
 	}
 }
+
+// Two ports that face each other a module apart leave no room between them for a branch: the
+// other ports of the net are joined all the same, wherever they stand and in any order.
+func TestPortsFacingEachOtherTakeABranch(t *testing.T) {
+	turned := func(p Pt, quarter int) Pt {
+		for range quarter {
+			p = Pt{-p.Y, p.X}
+		}
+		return p
+	}
+	for quarter := range 4 {
+		for _, rest := range [][]PlacedPort{
+			{port(12, 9, Pt{0, -1})},
+			{port(-9, -6, Pt{1, 0})},
+			{port(12, 9, Pt{-1, 0}), port(13, 9, Pt{1, 0})}, // faces away from its neighbour
+			{port(12, 9, Pt{1, 0}), port(13, 9, Pt{-1, 0})}, // a second pair
+			{port(0, 1, Pt{0, 1}), port(20, 0, Pt{-1, 0}), port(1, -1, Pt{0, -1})},
+		} {
+			ports := append([]PlacedPort{port(0, 0, Pt{1, 0}), port(1, 0, Pt{-1, 0})}, rest...)
+			for i := range ports {
+				ports[i].At, ports[i].Dir = turned(ports[i].At, quarter), turned(ports[i].Dir, quarter)
+			}
+			for first := range ports {
+				n := Net{Type: Oil, Ports: append(append([]PlacedPort{}, ports[first:]...), ports[:first]...)}
+				blocks := []Box{}
+				for _, p := range n.Ports { // a block of 4 by 4 behind each port
+					c := Pt{p.At.X - 2*p.Dir.X, p.At.Y - 2*p.Dir.Y}
+					blocks = append(blocks, Box{Pt{c.X - 2, c.Y - 2}, Pt{c.X + 2, c.Y + 2}})
+				}
+				for _, b := range [][]Box{nil, blocks} {
+					if r := RouteAll(b, []Net{n})[0]; !joins(r, n) {
+						t.Errorf("turned %d, %d blocks, ports %v: not all are joined by %v", quarter, len(b), n.Ports, r.Segments)
+					}
+				}
+			}
+		}
+	}
+}
