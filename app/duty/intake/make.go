@@ -121,12 +121,19 @@ func (p *Page) made(t audit.Taking, err error) {
 	if i >= 0 {
 		p.ctx.SetDuty(i)
 	}
-	said := fmt.Sprintf("Duty %s is made of %s: %d tracks.", t.Duty, logger.NameOf(append([]string{t.File}, t.More...)), len(t.Tracks))
+	said := fmt.Sprintf("Duty %s is made of %s: %s.", t.Duty, logger.NameOf(append([]string{t.File}, t.More...)), counted(len(t.Tracks), "track", "tracks"))
 	for _, a := range t.Also {
 		said += " Beside it stands " + logger.NameOf(a.Files) + "."
 	}
 	if n := len(t.Axes); n > 0 {
-		said += fmt.Sprintf(" New axes: %d.", n)
+		said += fmt.Sprintf(" New: %s.", counted(n, "axis", "axes"))
 	}
 	p.ctx.Say(said + " Undo takes it back.")
+}
+
+func counted(n int, one, many string) string {
+	if n == 1 {
+		return "1 " + one
+	}
+	return fmt.Sprintf("%d %s", n, many)
 }

@@ -34,15 +34,16 @@ type Page struct {
 	at      int
 	loading bool // values come from the recipe: choices are not the user's
 
-	sources []*source         // the loggers; the first gives the rows
-	hand    int               // the one that File and Columns show
-	which   *choice           // picks it
-	rec     *logger.Recording // of all loggers, nil before they are read
-	tracks  []logged.Track
-	axes    []duty.Axis // that the audit does not have yet
-	part    logged.Part
-	again   string          // the duty that is changed, "" for a new one
-	known   map[string]bool // tracks that were suggested or added
+	sources  []*source         // the loggers; the first gives the rows
+	hand     int               // the one that File and Columns show
+	which    *choice           // picks it
+	ofLogger *fyne.Container   // holds that
+	rec      *logger.Recording // of all loggers, nil before they are read
+	tracks   []logged.Track
+	axes     []duty.Axis // that the audit does not have yet
+	part     logged.Part
+	again    string          // the duty that is changed, "" for a new one
+	known    map[string]bool // tracks that were suggested or added
 
 	job  job
 	work sync.Mutex // held by what works tracks out
@@ -84,9 +85,8 @@ func New(ctx station.Context) *Page {
 	cycle := newCycles(p)
 	add("Cycles", cycle.content, cycle.fill, nil)
 	p.which = p.newChoice("intake.logger", nil, nil, func(word string) { p.show(slices.Index(p.which.words, word)) })
-	of := container.New(widgets.Wide(240), p.which.Select)
-	p.which.Hide()
-	p.content = widgets.Spaced(container.NewBorder(container.NewVBox(p.head.content, container.NewBorder(nil, nil, nil, of, container.NewHScroll(bar))), nil, nil, nil, bodies))
+	p.ofLogger = container.New(widgets.Wide(190), p.which.Select)
+	p.content = widgets.Spaced(container.NewBorder(container.NewVBox(p.head.content, container.NewBorder(nil, nil, nil, p.ofLogger, container.NewHScroll(bar))), nil, nil, nil, bodies))
 	p.open(0)
 	return p
 }

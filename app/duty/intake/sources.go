@@ -74,7 +74,7 @@ func (p *Page) show(i int) {
 
 // fillWhich offers the loggers where there are several and the side at hand shows one.
 func (p *Page) fillWhich() {
-	show(p.which.Select, len(p.sources) > 1 && p.at <= 1)
+	show(p.ofLogger, len(p.sources) > 1 && p.at <= 1)
 	var words, labels []string
 	for i, s := range p.sources {
 		words, labels = append(words, strconv.Itoa(i)), append(labels, fmt.Sprintf("%d: %s", i+1, s.file.Name))
