@@ -26,10 +26,16 @@ func (*tableBytes) Close() error { return nil }
 // Which energy it is, is told by 12 s, where it does not matter where the intervals begin:
 // that of the pump loses 22.8 % there, 1.09 times the 21 %; taken at the inlet of either
 // valve apart it would be 7 and 37 %, at the motor 54 %, at the cylinder it turns its sign.
-// Of the shorter intervals, the one that begins most luckily in the cycle comes nearest, 1.1, 4.3, 13.0 and
-// 21.2 %, within a factor of 1.8; one that begins with the cycle loses 1.7, 7.1, 14.3 and 22.2 %, a
-// factor of 2.8, and the mean over all beginnings 3.1, 6.5, 14.1 and 22.2 %, 3.1 to 1. No beginning has 2.5 %
-// at 2 s (4.3 to 8.2 %), so its duty had other ramps or instants than the trial, which cannot be found out from here.
+// Of the shorter intervals, the one that begins most luckily in the cycle comes nearest, 1.1, 4.3, 14.2 and
+// 22.1 %, within a factor of 1.8; one that begins with the cycle loses 1.7, 7.1, 14.3 and 22.2 %, a
+// factor of 2.8, and the mean over all beginnings 3.1, 6.5, 14.3 and 22.2 %, 3.1 to 1. No beginning has 2.5 %
+// at 2 s (4.3 to 8.2 %). Neither has another way to reckon, tried on the same table with intervals that begin with the
+// cycle: the share of the energy at the motor that is lost (4.4 % at 2 s, 14.3 % at 12 s), the flow of the valves alone (the same),
+// the pressure without its margin of 20 bar (9.0 and 29 %), each valve with its own load pressure and the margin (13 and 29 %,
+// 1.7 to 13 % by beginning), rows at instants instead of means (-15 %, -16 to 17 % by beginning), straight lines between such
+// rows (-3.7 %, -3.7 to 28 %), one cycle with a shorter interval at its end (5.1 % at 5 s, 11.7 % at 10 s). Where one of them
+// meets 2.5 % at 2 s it misses the 21 % from 10 s on. So the published duty, which is described as of this kind and not written out,
+// had other ramps or instants than the trial.
 //
 // What the check estimates from the coarse rows alone, without the fine ones, must be within a
 // factor of four of what they lose while a cycle has two rows at least; with fewer it must say that it cannot be told. It must warn.
@@ -68,13 +74,18 @@ func TestMeansOfTrialC3(t *testing.T) {
 	for _, c := range []struct {
 		h, want float64
 		warns   bool
-	}{{1, 0.01, true}, {2, 0.025, true}, {5, 0.10, true}, {10, 0.21, true}, {12, 0.21, true}} {
+		begins  float64 // lost where intervals begin with the cycle, by sums over 1200 rows a cycle of the same table, apart from this program
+	}{{1, 0.01, true, 0.0170}, {2, 0.025, true, 0.0706}, {5, 0.10, true, 0.1425}, {10, 0.21, true, 0.2218}, {12, 0.21, true, 0.2281}} {
+		// 60 s hold whole intervals of each length and whole cycles: nothing is lost or won at an end
 		got, least, most := 0.0, 1.0, 0.0 // mean, best and worst of where intervals begin in the cycle
 		const starts = 16
 		for k := range starts {
 			i := sort.SearchFloat64s(ts, float64(k)/starts*c.h)
-			end := sort.SearchFloat64s(ts, ts[i]+float64(int(108/c.h))*c.h-1e-9)
+			end := sort.SearchFloat64s(ts, ts[i]+60-1e-9)
 			x := 1 - rate.Means(ts[i:end+1], ps[i:end+1], qs[i:end+1], c.h)/rate.Products(ts[i:end+1], ps[i:end+1], qs[i:end+1])
+			if k == 0 && math.Abs(x-c.begins) > 0.001 {
+				t.Errorf("means over %g s from the start of the cycle lose %.2f %%, want %.2f %%", c.h, 100*x, 100*c.begins)
+			}
 			got, least, most = got+x/starts, math.Min(least, x), math.Max(most, x)
 		}
 		t.Logf("means over %g s lose %.2f %% (%.2f to %.2f), independent calculation %.1f %%", c.h, 100*got, 100*least, 100*most, 100*c.want)

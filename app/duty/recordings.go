@@ -77,7 +77,10 @@ func (s *Station) changeImport() {
 
 // importNotes say where an imported duty comes from, what was done to it, and how to change that.
 func (s *Station) importNotes(im *audit.Import) {
-	text := fmt.Sprintf("Imported from %s: %d rows, SHA-256 %s.", im.File, im.Rows, im.SHA256)
+	text := fmt.Sprintf("Imported from %s: %d rows, SHA-256 %s.", strings.Join(append([]string{im.File}, im.More...), ", "), im.Rows, im.SHA256)
+	for _, a := range im.Also {
+		text += fmt.Sprintf(" Beside it %s, SHA-256 %s: %s.", strings.Join(a.Files, ", "), a.SHA256, a.How)
+	}
 	if !im.Part.Whole() {
 		text += fmt.Sprintf(" The duty is its %s, from %s to %s.", im.Part.Is, s.seconds(im.Part.From), s.seconds(im.Part.To))
 	}

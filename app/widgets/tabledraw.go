@@ -61,8 +61,9 @@ func (t *Table) paint(w, h int) image.Image {
 
 func (t *Table) draw(p pen.Pen, pal figures.Palette, w, h float64) {
 	if t.rows == 0 || len(t.columns) == 0 {
-		if t.Empty != "" {
-			p.Text(pen.Pt{X: w / 2, Y: h/2 + 4}, pen.Shorten(t.Empty, tableText, false, w-20), tableText, pal.Secondary, pen.Center, false)
+		lines := pen.Wrap(t.Empty, tableText, w-20)
+		for i, line := range lines {
+			p.Text(pen.Pt{X: w / 2, Y: h/2 + 4 + (float64(i)-float64(len(lines)-1)/2)*tableText*1.35}, line, tableText, pal.Secondary, pen.Center, false)
 		}
 		return
 	}

@@ -89,7 +89,7 @@ const legendStep = smallSize + 3
 
 // legendLines are the lines of the legend in a width.
 func (f EfficiencyMap) legendLines(w float64) []string {
-	out := wrapped(f.Y+inUnit(scaledUnit(thousands(f.ToY), f.YUnit))+" over "+f.X+"; contours: overall efficiency in %", smallSize, w)
+	out := pen.Wrap(f.Y+inUnit(scaledUnit(thousands(f.ToY), f.YUnit))+" over "+f.X+"; contours: overall efficiency in %", smallSize, w)
 	var signs []string
 	if len(f.Points) > 0 && f.PointsAre != "" {
 		signs = append(signs, "discs: "+f.PointsAre)
@@ -103,24 +103,7 @@ func (f EfficiencyMap) legendLines(w float64) []string {
 	if f.Inside != nil {
 		signs = append(signs, "pale: extrapolated")
 	}
-	return append(out, wrapped(strings.Join(signs, "; "), smallSize, w)...)
-}
-
-// wrapped breaks a text between words into lines of a width; a word that is longer is shortened.
-func wrapped(text string, size, w float64) []string {
-	var out []string
-	line := ""
-	for _, word := range strings.Fields(text) {
-		if next := strings.TrimSpace(line + " " + word); line == "" || pen.TextWidth(next, size, false) <= w {
-			line = next
-			continue
-		}
-		out, line = append(out, pen.Shorten(line, size, false, w)), word
-	}
-	if line != "" {
-		out = append(out, pen.Shorten(line, size, false, w))
-	}
-	return out
+	return append(out, pen.Wrap(strings.Join(signs, "; "), smallSize, w)...)
 }
 
 // title writes the title of a map, a little smaller where it would not fit.

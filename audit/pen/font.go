@@ -150,3 +150,20 @@ func Shorten(s string, size float64, bold bool, width float64) string {
 	}
 	return strings.TrimRight(s[:end], " ,;·") + "…"
 }
+
+// Wrap breaks a text between words into lines of a width; a word that is longer is shortened.
+func Wrap(text string, size, w float64) []string {
+	var out []string
+	line := ""
+	for _, word := range strings.Fields(text) {
+		if next := strings.TrimSpace(line + " " + word); line == "" || TextWidth(next, size, false) <= w {
+			line = next
+			continue
+		}
+		out, line = append(out, Shorten(line, size, false, w)), word
+	}
+	if line != "" {
+		out = append(out, Shorten(line, size, false, w))
+	}
+	return out
+}

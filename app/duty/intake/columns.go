@@ -144,7 +144,7 @@ func (c *columns) setSignal(w string) {
 
 // setEnd says what one end of a signal stands for, in the unit of the channel or another.
 func (c *columns) setEnd(i int, text string) error {
-	x := c.p.recipe.Channel(c.selected)
+	x := c.p.src().recipe.Channel(c.selected)
 	if x == nil || x.Scaling == nil {
 		return nil
 	}
@@ -180,13 +180,13 @@ func signalOf(x logger.Channel) string {
 
 func (c *columns) fill() {
 	p := c.p
-	pre, err := p.file.Preview(p.recipe, max(40, p.recipe.First+3))
+	pre, err := p.src().file.Preview(p.src().recipe, max(40, p.src().recipe.First+3))
 	if err != nil {
 		pre = &logger.Preview{}
 	}
 	c.names = nil
 	for _, n := range pre.Names {
-		if !slices.Contains(p.recipe.Time.Columns, n) && n != p.recipe.Time.Counter {
+		if !slices.Contains(p.src().recipe.Time.Columns, n) && n != p.src().recipe.Time.Counter {
 			c.names = append(c.names, n)
 		}
 	}
@@ -213,7 +213,7 @@ func (c *columns) fill() {
 }
 
 func (c *columns) row(name, first string) widgets.TableRow {
-	x := c.p.recipe.Channel(name)
+	x := c.p.src().recipe.Channel(name)
 	cells := []string{name, "left out", "", "", first}
 	switch {
 	case x == nil || x.Leave:
@@ -232,7 +232,7 @@ func (c *columns) fillDetails() {
 	show(c.details, c.selected != "")
 	setText(c.title, "Column "+c.selected)
 	x := logger.Channel{Column: c.selected, Leave: true}
-	if y := c.p.recipe.Channel(c.selected); y != nil {
+	if y := c.p.src().recipe.Channel(c.selected); y != nil {
 		x = *y
 	}
 	c.quantity.set(x.Quantity)

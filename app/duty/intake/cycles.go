@@ -79,7 +79,7 @@ func (c *cyclesTab) take(word string) {
 	case word == extremeIs && c.p.extreme() >= 0:
 		c.p.part = logged.PartOf(r.Cycles[r.Extreme], extremeIs)
 	default:
-		t := c.p.kept.Recording().Time
+		t := c.p.rec.Time
 		part := c.p.part
 		if part.Whole() {
 			part = logged.Part{From: t[0], To: t[len(t)-1]}
@@ -141,8 +141,8 @@ func (c *cyclesTab) fill() {
 	words := []string{wholeIs}
 	r := p.out.found
 	labels := []string{"the whole recording"}
-	if p.kept != nil {
-		t := p.kept.Recording().Time
+	if p.rec != nil {
+		t := p.rec.Time
 		labels[0] += ", " + p.seconds(t[len(t)-1]-t[0])
 	}
 	if r != nil && r.Typical >= 0 {

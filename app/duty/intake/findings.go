@@ -31,10 +31,10 @@ func (f *findings) fill() {
 	p := f.p
 	text := "What was found in the data, and what is done about it. The file itself is not touched; the list is kept with the audit and printed."
 	switch list := p.corrections(); {
-	case p.kept == nil:
+	case p.rec == nil:
 		text = "Here stands what is wrong with the data, once they are read."
 	case len(list) == 0:
-		text = fmt.Sprintf("Nothing is wrong with the %d rows: no gap, no doubled or unordered row, no clock that jumps, no channel that is stuck, clipped or out of its range. Nothing is changed.", len(p.kept.Recording().Time))
+		text = fmt.Sprintf("Nothing is wrong with the %d rows: no gap, no doubled or unordered row, no clock that jumps, no channel that is stuck, clipped or out of its range. Nothing is changed.", len(p.rec.Time))
 	}
 	setText(f.head, text)
 	shows := fmt.Sprint(p.corrections(), p.ctx.Local("0.0"))
@@ -65,6 +65,9 @@ func (f *findings) row(i int, c logger.Correction) fyne.CanvasObject {
 	case c.Line > 0:
 		text += fmt.Sprintf(", line %d", c.Line)
 	}
+	if c.File != "" && c.Line > 0 {
+		text += " of " + c.File
+	}
 	if c.Warns {
 		text, importance = "⚠ "+text, widget.DangerImportance
 	}
@@ -78,11 +81,12 @@ func (f *findings) row(i int, c logger.Correction) fyne.CanvasObject {
 		return words
 	}
 	pick := p.newChoice(name+".choice", c.Choices, nil, func(word string) {
-		p.change(func(r *logger.Recipe) {
+		s, key := p.owner(c.Key)
+		p.changeOf(s, func(r *logger.Recipe) {
 			if r.Choices == nil {
 				r.Choices = map[string]string{}
 			}
-			r.Choices[c.Key] = word
+			r.Choices[key] = word
 		})
 	})
 	pick.set(c.Choice)

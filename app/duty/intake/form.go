@@ -215,15 +215,19 @@ func setTimeColumn(r *logger.Recipe, i int, column string) {
 }
 
 // change changes the recipe and reads anew.
-func (p *Page) change(set func(r *logger.Recipe)) {
-	p.recipe = cloned(p.recipe)
-	set(&p.recipe)
-	p.read()
+func (p *Page) change(set func(r *logger.Recipe)) { p.changeOf(p.src(), set) }
+
+// changeOf is change for one of the loggers.
+func (p *Page) changeOf(s *source, set func(r *logger.Recipe)) {
+	s.recipe = cloned(s.recipe)
+	set(&s.recipe)
+	s.kept = nil
+	p.readAll()
 }
 
 // fill shows the recipe.
 func (f *form) fill() {
-	r := f.p.recipe
+	r := f.p.src().recipe
 	f.fillQuestions()
 	f.encoding.set(r.Encoding)
 	f.separator.set(r.Separator)
@@ -264,7 +268,7 @@ func (f *form) fill() {
 // fillQuestions asks what the file leaves open.
 func (f *form) fillQuestions() {
 	f.questions.Objects = nil
-	for _, q := range f.p.recipe.Open() {
+	for _, q := range f.p.src().recipe.Open() {
 		f.questions.Add(say("⚠ "+q.Text, widget.DangerImportance, false))
 		f.questions.Add(f.answerTo(q))
 	}
@@ -288,8 +292,15 @@ func (f *form) answerTo(q logger.Question) fyne.CanvasObject {
 
 // blocking are the questions without whose answer nothing is read. What a signal means can
 // be told later: until then it is read in mA.
-func (p *Page) blocking() []logger.Question {
-	return slices.DeleteFunc(p.recipe.Open(), func(q logger.Question) bool { return strings.HasSuffix(q.Field, logger.ScalingField) })
+func (p *Page) blocking() (out []logger.Question) {
+	for _, s := range p.sources {
+		out = append(out, s.blocking()...)
+	}
+	return out
+}
+
+func (s *source) blocking() []logger.Question {
+	return slices.DeleteFunc(s.recipe.Open(), func(q logger.Question) bool { return strings.HasSuffix(q.Field, logger.ScalingField) })
 }
 
 // unscaled is a recipe by which signals of unknown meaning are read in mA.
@@ -309,12 +320,12 @@ func (p *Page) answer(field, word string) error {
 		p.restructure(func(r *logger.Recipe) { r.Separator, r.Questions = word, nil })
 		return nil
 	}
-	r := cloned(p.recipe)
+	r := cloned(p.src().recipe)
 	r.Questions = slices.Clone(r.Questions)
 	if err := r.Answer(field, word); err != nil {
 		return err
 	}
-	p.recipe = r
+	p.src().recipe = r
 	p.read()
 	return nil
 }
@@ -322,11 +333,11 @@ func (p *Page) answer(field, word string) error {
 // fillTables shows both ends of the file.
 func (f *form) fillTables() {
 	p := f.p
-	pre, err := p.file.Preview(p.recipe, ends)
+	pre, err := p.src().file.Preview(p.src().recipe, ends)
 	if err != nil {
 		f.wrong.SetText("⚠ " + err.Error())
 		pre = &logger.Preview{}
-		if raw, err := p.file.Preview(logger.Recipe{Encoding: p.recipe.Encoding, Separator: p.recipe.Separator, Decimal: ".", First: 1, Time: logger.Time{Form: logger.Spaced, Interval: 1}}, ends); err == nil {
+		if raw, err := p.src().file.Preview(logger.Recipe{Encoding: p.src().recipe.Encoding, Separator: p.src().recipe.Separator, Decimal: ".", First: 1, Time: logger.Time{Form: logger.Spaced, Interval: 1}}, ends); err == nil {
 			pre.First, pre.Last = raw.First, raw.Last
 		}
 	} else {
@@ -336,8 +347,8 @@ func (f *form) fillTables() {
 	if err == nil {
 		f.clock.offer(pre.Names, nil)
 		f.second.offer(append([]string{""}, pre.Names...), append([]string{"none"}, pre.Names...))
-		f.clock.set(column(p.recipe.Time.Columns, 0))
-		f.second.set(column(p.recipe.Time.Columns, 1))
+		f.clock.set(column(p.src().recipe.Time.Columns, 0))
+		f.second.set(column(p.src().recipe.Time.Columns, 1))
 	}
 	rows := joinedEnds(pre)
 	f.raw.SetData([]widgets.Column{{Name: "line", Head: "Line"}, {Name: "text", Head: "Text", Left: true}}, len(rows), func(i int) widgets.TableRow {
@@ -348,7 +359,7 @@ func (f *form) fillTables() {
 	})
 	columns := []widgets.Column{{Name: "line", Head: "Line"}, {Name: "t", Head: "Time", Unit: "s"}}
 	var shown []int
-	for i, c := range p.recipe.Channels {
+	for i, c := range p.src().recipe.Channels {
 		if !c.Leave && !c.Text {
 			shown = append(shown, i)
 			columns = append(columns, widgets.Column{Name: c.Column, Head: c.Column, Unit: c.Unit})
@@ -404,7 +415,7 @@ func (f *form) readRow(r *logger.PreviewRow, shown []int) widgets.TableRow {
 	for _, i := range shown {
 		text := "–"
 		if i < len(r.SI) && r.SI[i] == r.SI[i] {
-			text = f.p.ctx.Local(units.Number(unitOf(f.p.recipe.Channels[i]).FromSI(r.SI[i]), 5))
+			text = f.p.ctx.Local(units.Number(unitOf(f.p.src().recipe.Channels[i]).FromSI(r.SI[i]), 5))
 		}
 		cells = append(cells, text)
 	}

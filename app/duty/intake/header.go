@@ -57,12 +57,16 @@ func (h *header) takeHours(text string) error {
 // fill says how things stand.
 func (h *header) fill() {
 	p := h.p
-	if p.file == nil {
+	if len(p.sources) == 0 {
 		return
 	}
-	title := "Recording " + p.file.Name + ", " + station.FileSize(p.file.Size)
-	if p.kept != nil {
-		rec := p.kept.Recording()
+	file := p.sources[0].file
+	title := "Recording " + file.Name + ", " + station.FileSize(file.Size)
+	for _, s := range p.sources[1:] {
+		title += " and " + s.file.Name
+	}
+	if p.rec != nil {
+		rec := p.rec
 		n := len(rec.Time)
 		title += fmt.Sprintf(" · %d rows, one every %s · %s", n, p.brief(rec.Interval), p.brief(rec.Time[n-1]-rec.Time[0]))
 		if rec.Start != "" {
@@ -128,7 +132,7 @@ func (p *Page) ready() string {
 		return "The file leaves a question open; answer it under File."
 	case p.job.says != "":
 		return p.job.says
-	case p.kept == nil:
+	case p.rec == nil:
 		return "Nothing was read yet."
 	case len(p.tracks) == 0:
 		return "No track yet; add one under Tracks."

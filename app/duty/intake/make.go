@@ -2,19 +2,14 @@ package intake
 
 import (
 	"context"
-	"crypto/sha256"
-	"encoding/hex"
 	"errors"
 	"fmt"
-	"io"
-	"io/fs"
-	"os"
 	"path/filepath"
 	"strings"
 
 	"barlitre/audit"
-	"barlitre/audit/whole"
 	"barlitre/circuit/logged"
+	"barlitre/circuit/recording/logger"
 	"barlitre/machines/units"
 )
 
@@ -56,102 +51,24 @@ func hoursText(text string) (string, error) {
 	return units.FileText(si, u), nil
 }
 
-// beside makes the duty once the recording lies beside the audit or below.
+// beside makes the duty once the recordings lie beside the audit or below.
 func (p *Page) beside(hours string) {
-	dir := filepath.Dir(p.ctx.Doc().Path())
-	if rel, err := filepath.Rel(dir, p.path); err == nil && filepath.IsLocal(rel) {
-		p.finish(filepath.ToSlash(rel), hours)
-		return
+	c := copier{dir: filepath.Dir(p.ctx.Doc().Path())}
+	for _, s := range p.sources {
+		c.all = append(c.all, toCopy{s.paths, s.kept.Recording().SHA256})
+		c.size += s.file.Size
 	}
-	from, sum, size := p.path, p.kept.Recording().SHA256, p.file.Size
 	p.start("Copying the recording beside the audit", func(ctx context.Context, share func(float64)) func() {
-		name, err := copied(ctx, from, dir, sum, func(done int64) { share(float64(done) / float64(max(1, size))) })
+		names, err := c.copy(ctx, share)
 		return func() {
 			if err != nil {
 				p.job.failed = err.Error()
 				p.refresh()
 				return
 			}
-			p.finish(name, hours)
+			p.finish(names, hours)
 		}
 	})
-}
-
-// copied puts a recording into a folder, under its name or, where another file has that, the
-// next free one. sum is the fingerprint that it was read with.
-func copied(ctx context.Context, from, dir, sum string, tell func(done int64)) (name string, err error) {
-	ext := filepath.Ext(from)
-	base := strings.TrimSuffix(filepath.Base(from), ext)
-	for n := 1; ; n++ {
-		name = base + ext
-		if n > 1 {
-			name = fmt.Sprintf("%s-%d%s", base, n, ext)
-		}
-		there, err := sumOf(ctx, filepath.Join(dir, name))
-		if errors.Is(err, fs.ErrNotExist) {
-			break
-		}
-		if err != nil {
-			return "", fmt.Errorf("%s cannot be read: %w", name, whole.Plain(err))
-		}
-		if there == sum {
-			return name, nil
-		}
-	}
-	in, err := os.Open(from)
-	if err != nil {
-		return "", fmt.Errorf("%s cannot be read: %w", filepath.Base(from), whole.Plain(err))
-	}
-	defer in.Close()
-	target := filepath.Join(dir, name)
-	out, err := os.OpenFile(target, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o644)
-	if err != nil {
-		return "", fmt.Errorf("%s cannot be put beside the audit: %w", name, whole.Plain(err))
-	}
-	hash := sha256.New()
-	_, err = io.Copy(io.MultiWriter(out, hash), &watched{ctx: ctx, in: in, tell: tell})
-	err = errors.Join(err, out.Close())
-	if err == nil && hex.EncodeToString(hash.Sum(nil)) != sum {
-		err = errors.New("it was changed since it was read; open it again")
-	}
-	if err != nil {
-		return "", errors.Join(fmt.Errorf("%s cannot be put beside the audit: %w", name, whole.Plain(err)), os.Remove(target))
-	}
-	return name, nil
-}
-
-func sumOf(ctx context.Context, path string) (string, error) {
-	f, err := os.Open(path)
-	if err != nil {
-		return "", err
-	}
-	defer f.Close()
-	hash := sha256.New()
-	_, err = io.Copy(hash, &watched{ctx: ctx, in: f})
-	return hex.EncodeToString(hash.Sum(nil)), err
-}
-
-// watched ends reading when it is told to, and tells how far it is.
-type watched struct {
-	ctx  context.Context
-	in   io.Reader
-	done int64
-	told int64
-	tell func(done int64)
-}
-
-const tellBytes = 4 << 20
-
-func (w *watched) Read(b []byte) (int, error) {
-	if err := w.ctx.Err(); err != nil {
-		return 0, err
-	}
-	n, err := w.in.Read(b)
-	if w.done += int64(n); w.tell != nil && w.done-w.told > tellBytes {
-		w.told = w.done
-		w.tell(w.done)
-	}
-	return n, err
 }
 
 // rowsEnough is from how many rows on a recording's energies are counted at its rows alone.
@@ -161,10 +78,11 @@ const rowsEnough = 1000
 func cyclic(part logged.Part) bool { return !part.Whole() && part.Is != stretchIs }
 
 // finish edits the audit, as one step of undo, and leaves.
-func (p *Page) finish(file, hours string) {
+func (p *Page) finish(names [][]string, hours string) {
 	t := p.taking()
-	t.Duty, t.File, t.Part, t.Keys = strings.TrimSpace(p.head.name.Text), file, p.part, map[string]string{}
-	step := "Take in " + p.file.Name
+	placed(&t, names)
+	t.Duty, t.Part, t.Keys = strings.TrimSpace(p.head.name.Text), p.part, map[string]string{}
+	step := "Take in " + p.sources[0].file.Name
 	if p.again != "" {
 		t.Duty, step = p.again, "Change how "+p.again+" is taken in"
 	} else {
@@ -187,12 +105,12 @@ func (p *Page) finish(file, hours string) {
 			}
 			return ctx.Err() // cancelled meanwhile: nothing is changed
 		})
-		return func() { p.made(t, file, err) }
+		return func() { p.made(t, err) }
 	})
 }
 
 // made leaves once the duty is in the audit, and says so.
-func (p *Page) made(t audit.Taking, file string, err error) {
+func (p *Page) made(t audit.Taking, err error) {
 	if err != nil {
 		p.refresh()
 		p.ctx.Fail(fmt.Errorf("%w. Nothing was changed", err))
@@ -203,9 +121,19 @@ func (p *Page) made(t audit.Taking, file string, err error) {
 	if i >= 0 {
 		p.ctx.SetDuty(i)
 	}
-	said := fmt.Sprintf("Duty %s is made of %s: %d tracks.", t.Duty, file, len(t.Tracks))
+	said := fmt.Sprintf("Duty %s is made of %s: %s.", t.Duty, logger.NameOf(append([]string{t.File}, t.More...)), counted(len(t.Tracks), "track", "tracks"))
+	for _, a := range t.Also {
+		said += " Beside it stands " + logger.NameOf(a.Files) + "."
+	}
 	if n := len(t.Axes); n > 0 {
-		said += fmt.Sprintf(" New axes: %d.", n)
+		said += fmt.Sprintf(" New: %s.", counted(n, "axis", "axes"))
 	}
 	p.ctx.Say(said + " Undo takes it back.")
+}
+
+func counted(n int, one, many string) string {
+	if n == 1 {
+		return "1 " + one
+	}
+	return fmt.Sprintf("%d %s", n, many)
 }

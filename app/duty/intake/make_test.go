@@ -115,23 +115,23 @@ func TestCorrections(t *testing.T) {
 		b.WriteString(n + ";1," + n + "00\n")
 	}
 	open(b.String())
-	if len(p.recipe.Questions) == 0 || p.kept != nil || p.at != 0 {
-		t.Fatalf("questions %v", p.recipe.Questions)
+	if len(p.src().recipe.Questions) == 0 || p.rec != nil || p.at != 0 {
+		t.Fatalf("questions %v", p.src().recipe.Questions)
 	}
-	p.answer(p.recipe.Questions[0].Field, ",")
-	if p.kept == nil || p.kept.Recording().Find("F").Values()[1] != 1.1 {
-		t.Errorf("answered: %v, %s", p.recipe, p.job.failed)
+	p.answer(p.src().recipe.Questions[0].Field, ",")
+	if p.rec == nil || p.rec.Find("F").Values()[1] != 1.1 {
+		t.Errorf("answered: %v, %s", p.src().recipe, p.job.failed)
 	}
 	open("t [s],v [m/s]\n0,1\n1,2\n2,3\n3,3\n4,3\n")
 	p.tabs[0].fill()
-	if p.kept == nil || p.kept.Recording().Find("v") == nil {
-		t.Fatalf("%+v %s", p.recipe, p.job.failed)
+	if p.rec == nil || p.rec.Find("v") == nil {
+		t.Fatalf("%+v %s", p.src().recipe, p.job.failed)
 	}
 	separator := func(word string) { p.restructure(func(r *logger.Recipe) { r.Separator = word }) }
-	if separator(";"); p.kept != nil && p.kept.Recording().Find("v") != nil {
+	if separator(";"); p.rec != nil && p.rec.Find("v") != nil {
 		t.Error("read with a wrong separator")
 	}
-	if separator(","); p.kept == nil || p.kept.Recording().Find("v") == nil || p.kept.Recording().Find("v").Unit != "m/s" {
-		t.Errorf("put right: %+v, %s", p.recipe, p.job.failed)
+	if separator(","); p.rec == nil || p.rec.Find("v") == nil || p.rec.Find("v").Unit != "m/s" {
+		t.Errorf("put right: %+v, %s", p.src().recipe, p.job.failed)
 	}
 }

@@ -7,6 +7,7 @@ package intake
 import (
 	"fmt"
 	"path/filepath"
+	"slices"
 	"strings"
 	"sync"
 
@@ -16,8 +17,6 @@ import (
 
 	"barlitre/app/station"
 	"barlitre/app/widgets"
-	"barlitre/audit"
-	"barlitre/audit/whole"
 	"barlitre/circuit/duty"
 	"barlitre/circuit/logged"
 	"barlitre/circuit/recording/logger"
@@ -35,15 +34,16 @@ type Page struct {
 	at      int
 	loading bool // values come from the recipe: choices are not the user's
 
-	path   string
-	file   *logger.File
-	recipe logger.Recipe
-	kept   *audit.Kept // what the recipe read, nil before
-	tracks []logged.Track
-	axes   []duty.Axis // that the audit does not have yet
-	part   logged.Part
-	again  string          // the duty that is changed, "" for a new one
-	known  map[string]bool // tracks that were suggested or added
+	sources  []*source         // the loggers; the first gives the rows
+	hand     int               // the one that File and Columns show
+	which    *choice           // picks it
+	ofLogger *fyne.Container   // holds that
+	rec      *logger.Recording // of all loggers, nil before they are read
+	tracks   []logged.Track
+	axes     []duty.Axis // that the audit does not have yet
+	part     logged.Part
+	again    string          // the duty that is changed, "" for a new one
+	known    map[string]bool // tracks that were suggested or added
 
 	job  job
 	work sync.Mutex // held by what works tracks out
@@ -73,16 +73,20 @@ func New(ctx station.Context) *Page {
 		bodies.Add(body)
 	}
 	form := newForm(p)
-	add("File", form.content, form.fill, func() string { return count(len(p.recipe.Open())) })
+	add("File", form.content, form.fill, func() string { return count(len(p.src().recipe.Open())) })
 	columns := newColumns(p)
 	add("Columns", columns.content, columns.fill, nil)
+	loggers := newLoggers(p)
+	add("Loggers", loggers.content, loggers.fill, nil)
 	found := newFindings(p)
 	add("Findings", found.content, found.fill, func() string { return count(len(p.corrections())) })
 	tracks := newTracks(p)
 	add("Tracks", tracks.content, tracks.fill, func() string { return count(len(p.out.faults)) })
 	cycle := newCycles(p)
 	add("Cycles", cycle.content, cycle.fill, nil)
-	p.content = widgets.Spaced(container.NewBorder(container.NewVBox(p.head.content, container.NewHScroll(bar)), nil, nil, nil, bodies))
+	p.which = p.newChoice("intake.logger", nil, nil, func(word string) { p.show(slices.Index(p.which.words, word)) })
+	p.ofLogger = container.New(widgets.Wide(190), p.which.Select)
+	p.content = widgets.Spaced(container.NewBorder(container.NewVBox(p.head.content, container.NewBorder(nil, nil, nil, p.ofLogger, container.NewHScroll(bar))), nil, nil, nil, bodies))
 	p.open(0)
 	return p
 }
@@ -120,7 +124,8 @@ func (p *Page) refresh() {
 		}
 	}
 	p.head.fill()
-	if p.file != nil {
+	p.fillWhich()
+	if len(p.sources) > 0 {
 		p.loading = true
 		p.tabs[p.at].fill()
 		p.loading = false
@@ -132,16 +137,15 @@ func (p *Page) Changed(station.What) { p.refresh() }
 
 // Open begins with a recording; it says why it cannot.
 func (p *Page) Open(path string) error {
-	file, err := logger.Open(path)
+	s, err := newSource(path)
 	if err != nil {
 		return err
 	}
-	p.begin(path, file)
-	p.recipe = file.Guess()
+	p.begin(s)
 	p.head.name.SetValue(p.freeName(path), "")
-	p.at = 0
+	p.at = fileTab
 	if len(p.blocking()) == 0 {
-		p.at = 3 // what comes of it; the other sides tell how
+		p.at = tracksTab // what comes of it; the other sides tell how
 	}
 	p.read()
 	return nil
@@ -151,22 +155,27 @@ func (p *Page) Open(path string) error {
 func (p *Page) Reopen(i int) error {
 	f := p.ctx.Doc().File()
 	im := f.Imports[i]
-	path := filepath.Join(filepath.Dir(p.ctx.Doc().Path()), filepath.FromSlash(im.File))
-	file, err := logger.Open(path)
+	list, err := sourcesOf(im, filepath.Dir(p.ctx.Doc().Path()))
 	if err != nil {
-		return fmt.Errorf("%s cannot be opened: %w; put it back beside the audit file", im.File, whole.Plain(err))
+		return err
 	}
-	p.begin(path, file)
-	p.recipe, p.again, p.part, p.tracks = im.Recipe, f.Duties[i].Name, im.Part, im.TracksOf()
+	p.begin(list...)
+	p.again, p.part, p.tracks = f.Duties[i].Name, im.Part, im.TracksOf()
 	p.head.name.SetValue(p.again, "")
-	p.at = 3
+	p.at = tracksTab
 	p.read()
 	return nil
 }
 
-func (p *Page) begin(path string, file *logger.File) {
+// The sides that the page opens with.
+const (
+	fileTab   = 0
+	tracksTab = 4
+)
+
+func (p *Page) begin(list ...*source) {
 	p.job.cancel()
-	p.path, p.file, p.kept = path, file, nil
+	p.sources, p.hand, p.rec = list, 0, nil
 	p.tracks, p.axes, p.part, p.again, p.known, p.out = nil, nil, logged.Part{}, "", map[string]bool{}, outcome{}
 }
 
@@ -192,7 +201,7 @@ func (p *Page) dutyNamed(name string) int {
 // close leaves the page; nothing is changed.
 func (p *Page) close() {
 	p.job.cancel()
-	p.file, p.kept, p.out = nil, nil, outcome{}
+	p.sources, p.hand, p.rec, p.out = nil, 0, nil, outcome{}
 	p.Leave()
 }
 
@@ -211,10 +220,10 @@ func (p *Page) allAxes() []duty.Axis {
 }
 
 func (p *Page) corrections() []logger.Correction {
-	if p.kept == nil {
+	if p.rec == nil {
 		return nil
 	}
-	return p.kept.Recording().Corrections
+	return p.rec.Corrections
 }
 
 func (p *Page) seconds(t float64) string { return p.ctx.Text(t, units.Time, 4) }

@@ -84,35 +84,41 @@ func (p *Page) interrupt() {
 // tellEvery is how often progress is shown.
 const tellEvery = 100 * time.Millisecond
 
-// read reads the recording by the recipe, then works the tracks out.
+// read reads the logger at hand by its recipe, and those that are not read yet, then works the tracks out.
 func (p *Page) read() {
-	p.kept, p.out = nil, outcome{}
+	p.src().kept = nil
+	p.readAll()
+}
+
+// readAll reads what is not read yet, and sets the other loggers beside the first.
+func (p *Page) readAll() {
+	p.rec, p.out = nil, outcome{}
 	if len(p.blocking()) > 0 {
 		p.job.cancel()
 		p.job.failed = ""
 		p.refresh()
 		return
 	}
-	file, recipe := p.file, unscaled(p.recipe)
-	p.start("Reading "+file.Name, func(ctx context.Context, share func(float64)) func() {
-		told := time.Now()
-		rec, err := file.Import(ctx, recipe, func(done, total int64) {
-			if now := time.Now(); now.Sub(told) > tellEvery && total > 0 {
-				told = now
-				share(float64(done) / float64(total))
-			}
-		})
-		return func() { p.wasRead(rec, err) }
+	list := make([]source, len(p.sources))
+	for i, s := range p.sources {
+		list[i] = *s
+	}
+	p.start("Reading "+p.src().file.Name, func(ctx context.Context, share func(float64)) func() {
+		rec, err := readSources(ctx, list, share)
+		return func() { p.wasRead(list, rec, err) }
 	})
 }
 
-func (p *Page) wasRead(rec *logger.Recording, err error) {
+func (p *Page) wasRead(list []source, rec *logger.Recording, err error) {
+	for i, s := range p.sources {
+		s.kept, s.also = list[i].kept, list[i].also
+	}
 	if err != nil {
 		p.job.failed = whole.Plain(err).Error()
 		p.refresh()
 		return
 	}
-	p.kept = audit.Keep(rec)
+	p.rec = rec
 	p.suggest(rec)
 	p.derive()
 }
@@ -195,7 +201,7 @@ type outcome struct {
 
 // derive works the tracks out, and what they tell.
 func (p *Page) derive() {
-	if p.kept == nil {
+	if p.rec == nil {
 		p.refresh()
 		return
 	}
@@ -222,7 +228,8 @@ func (p *Page) taking() audit.Taking {
 		of, _, _ := strings.Cut(t.Name, ".")
 		used[of] = true
 	}
-	t := audit.Taking{File: p.file.Name, Kept: p.kept, Tracks: slices.Clone(p.tracks)}
+	t := audit.Taking{Tracks: slices.Clone(p.tracks)}
+	t.File, t.More, t.Kept, t.Also = p.takenFrom()
 	for _, a := range p.axes {
 		if used[a.Name] {
 			t.Axes = append(t.Axes, a)

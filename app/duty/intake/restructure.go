@@ -9,7 +9,7 @@ import (
 // restructure changes how lines are cut into columns, and finds out anew what the columns
 // then are; what was said of columns that keep their names stays.
 func (p *Page) restructure(set func(r *logger.Recipe)) {
-	old := p.recipe
+	old := p.src().recipe
 	r := cloned(old)
 	set(&r)
 	fresh, ok := p.columnsOf(r)
@@ -33,7 +33,7 @@ func (p *Page) restructure(set func(r *logger.Recipe)) {
 			}
 		}
 	}
-	p.recipe = r
+	p.src().recipe = r
 	p.read()
 }
 
@@ -55,7 +55,7 @@ func has(r logger.Recipe, columns []string) bool {
 // guessed as a file of their own.
 func (p *Page) columnsOf(r logger.Recipe) (logger.Recipe, bool) {
 	r.Time, r.Channels = logger.Time{Form: logger.Spaced, Interval: 1}, nil
-	pre, err := p.file.Preview(r, max(r.First, r.Head, r.UnitsRow)+60)
+	pre, err := p.src().file.Preview(r, max(r.First, r.Head, r.UnitsRow)+60)
 	if err != nil {
 		return r, false
 	}
@@ -79,7 +79,7 @@ func (p *Page) columnsOf(r logger.Recipe) (logger.Recipe, bool) {
 			write(row.Cells)
 		}
 	}
-	f, err := logger.OpenBytes(p.file.Name, []byte(b.String()))
+	f, err := logger.OpenBytes(p.src().file.Name, []byte(b.String()))
 	if err != nil {
 		return r, false
 	}

@@ -157,10 +157,10 @@ func (p *Page) meets(l logged.Law) bool {
 
 // channelsOf are the columns that hold a quantity.
 func (p *Page) channelsOf(d units.Dim) (out []string) {
-	if p.kept == nil {
+	if p.rec == nil {
 		return nil
 	}
-	for _, s := range p.kept.Recording().Series {
+	for _, s := range p.rec.Series {
 		if s.Dim == d && s.Quantity != "" || d == units.Ratio && s.Quantity == "" {
 			out = append(out, s.Column)
 		}
@@ -232,8 +232,8 @@ func (t *tracks) key() string {
 	for _, x := range p.tracks {
 		s += x.Name + x.Law
 	}
-	if p.kept != nil {
-		s += p.kept.Recording().SHA256 + fmt.Sprint(p.recipe.Channels)
+	if p.rec != nil {
+		s += p.rec.SHA256 + fmt.Sprint(p.src().recipe.Channels)
 	}
 	return s
 }

@@ -45,12 +45,15 @@ func (r *Recording) Attach(other *Recording, offset float64, how string) (*Recor
 		t := *s
 		t.index, t.time, t.raw, t.ready = nil, r.Time, column{}, readAt(r.Time, other.Time, s.Values(), offset)
 		if out.Find(t.Column) != nil {
-			t.Column += " of " + other.Name
+			t.Column += Of(other.Name)
 		}
 		out.Series = append(out.Series, &t)
 	}
 	return &out, nil
 }
+
+// Of is what the name of a channel ends in where another recording has one of the same name.
+func Of(name string) string { return " of " + name }
 
 // readAt reads values at times on straight lines, NaN outside.
 func readAt(at, t, v []float64, offset float64) []float64 {

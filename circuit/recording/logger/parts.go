@@ -40,15 +40,20 @@ func OpenSources(names []string, sizes []int64, reopen func(k int) (io.ReadClose
 	if len(names) == 0 {
 		return nil, fmt.Errorf("no file is named")
 	}
-	f := &File{Name: names[0]}
-	if n := len(names); n > 1 {
-		f.Name = fmt.Sprintf("%s to %s (%d files)", names[0], names[n-1], n)
-	}
+	f := &File{Name: NameOf(names)}
 	for k, name := range names {
 		f.parts = append(f.parts, part{name, sizes[k], func() (io.ReadCloser, error) { return reopen(k) }})
 		f.Size += sizes[k]
 	}
 	return f, f.ends()
+}
+
+// NameOf is what a recording of these files is called.
+func NameOf(names []string) string {
+	if n := len(names); n > 1 {
+		return fmt.Sprintf("%s to %s (%d files)", names[0], names[n-1], n)
+	}
+	return names[0]
 }
 
 // Sum returns the SHA-256 of files one after another, as a Recording has it, with progress and cancel as Import has them.
