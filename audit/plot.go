@@ -59,6 +59,17 @@ func (p *Plot) Signal(name string) *Track {
 	return nil
 }
 
+// PowerAt adds up the powers [W] of some channels at a time.
+func (p *Plot) PowerAt(t float64, of func(circuit.Channel) bool) float64 {
+	sum := 0.0
+	for i, c := range p.Channels {
+		if of(c) {
+			sum += p.Powers[i].At(t)
+		}
+	}
+	return sum
+}
+
 // CourseOf returns what a track of a duty asks for over time, thinned as in a Plot.
 func CourseOf(d *duty.Duty, asked duty.Track) Track {
 	t, v := d.Time, asked.Values

@@ -14,8 +14,8 @@ import (
 // calculation shows how a number came about.
 type calculation struct {
 	widget.BaseWidget
-	title, value             *widget.Label
-	formula, numbers, source *widget.Label
+	title, value             *widgets.Text
+	formula, numbers, source *widgets.Text
 	box                      fyne.CanvasObject
 }
 
@@ -30,10 +30,10 @@ func newCalculation() *calculation {
 	return c
 }
 
-func paragraph(bold bool) *widget.Label {
-	l := widget.NewLabelWithStyle("", fyne.TextAlignLeading, fyne.TextStyle{Bold: bold})
-	l.Wrapping = fyne.TextWrapWord
-	return l
+func paragraph(bold bool) *widgets.Text {
+	t := widgets.Wrapped("")
+	t.TextStyle.Bold = bold
+	return t
 }
 
 // show opens a calculation.

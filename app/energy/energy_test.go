@@ -78,7 +78,7 @@ func TestStepOpensTheReportsDigits(t *testing.T) {
 		clickStep(t, s, c.step)
 		cells := reportRow(t, r, c.circuit, c.row)
 		dump := s.calc.DumpText()
-		if !strings.Contains(dump, "Calculation: "+c.circuit+", "+c.row) || !strings.Contains(s.calc.value.Text, cells[2]) || !strings.Contains(s.calc.numbers.Text, cells[2]) {
+		if !strings.Contains(dump, "Calculation: "+c.circuit+", "+c.row) || !strings.Contains(s.calc.value.DumpText(), cells[2]) || !strings.Contains(s.calc.numbers.DumpText(), cells[2]) {
 			t.Errorf("%s: %q lacks %q", c.step, dump, cells[2])
 		}
 		if row, _ := s.table.Selection(); row < 0 || s.lines[row].row.Name != c.row || s.circuitName(s.lines[row].circuit) != c.circuit {
@@ -91,7 +91,7 @@ func TestStepOpensTheReportsDigits(t *testing.T) {
 	}
 	relief := s.shown.LossCalculation(0, 0, "RV1", "relief spill", units.Metric)
 	clickStep(t, s, "1.RV1: relief spill")
-	if s.calc.formula.Text != relief.Formula || s.calc.numbers.Text != relief.Numbers || !strings.Contains(s.calc.source.Text, relief.Source) {
+	if s.calc.formula.DumpText() != relief.Formula || s.calc.numbers.DumpText() != relief.Numbers || !strings.Contains(s.calc.source.DumpText(), relief.Source) {
 		t.Errorf("the calculation of the relief valve is %q", s.calc.DumpText())
 	}
 }
@@ -127,8 +127,8 @@ func TestTableHasTheReportsDigits(t *testing.T) {
 			}
 		}
 		selectRow(t, f, s, s.tableRow(i).Name)
-		if !strings.Contains(s.calc.numbers.Text, cells[2]) {
-			t.Errorf("%s: the calculation %q lacks %q", l.row.Name, s.calc.numbers.Text, cells[2])
+		if !strings.Contains(s.calc.numbers.DumpText(), cells[2]) {
+			t.Errorf("%s: the calculation %q lacks %q", l.row.Name, s.calc.numbers.DumpText(), cells[2])
 		}
 	}
 }
@@ -164,8 +164,8 @@ func TestYear(t *testing.T) {
 		}
 	}
 	s.scope.SetSelectedIndex(1)
-	if f.At != 1 || s.year || !strings.Contains(s.calc.title.Text, "drawn from the supply") {
-		t.Errorf("duty %d, year %v, %q", f.At, s.year, s.calc.title.Text)
+	if f.At != 1 || s.year || !strings.Contains(s.calc.title.DumpText(), "drawn from the supply") {
+		t.Errorf("duty %d, year %v, %q", f.At, s.year, s.calc.title.DumpText())
 	}
 }
 
@@ -199,7 +199,7 @@ func TestOneScale(t *testing.T) {
 func TestGatheredStep(t *testing.T) {
 	_, s := shown(t, "baling-press.yaml")
 	clickStep(t, s, "1.other losses to the oil")
-	if !strings.Contains(s.calc.formula.Text, "Σ") || !strings.Contains(s.calc.numbers.Text, "F1: filter  1.762\u202fkJ") {
+	if !strings.Contains(s.calc.formula.DumpText(), "Σ") || !strings.Contains(s.calc.numbers.DumpText(), "F1: filter  1.762\u202fkJ") {
 		t.Errorf("gathered losses: %q", s.calc.DumpText())
 	}
 	if row, _ := s.table.Selection(); row >= 0 {
@@ -211,13 +211,13 @@ func TestFigureOpens(t *testing.T) {
 	f, s := shown(t, "baling-press.yaml")
 	for _, fig := range f.Report().Circuits[1].Duties[0].Figures {
 		s.Explain(fig)
-		if !strings.Contains(s.calc.title.Text, f.Report().Circuits[1].Name) && fig.Name != "cycle" || s.calc.value.Text != fig.Text || s.calc.numbers.Text != fig.Calculation.Numbers {
+		if !strings.Contains(s.calc.title.DumpText(), f.Report().Circuits[1].Name) && fig.Name != "cycle" || s.calc.value.DumpText() != fig.Text || s.calc.numbers.DumpText() != fig.Calculation.Numbers {
 			t.Errorf("%s: %q", fig.Name, s.calc.DumpText())
 		}
 	}
 	want := f.Report().Circuits[0].Duties[0].Figures[1]
 	s.figures.Table.Tapped(1, 1)
-	if s.calc.value.Text != want.Text || !strings.Contains(s.calc.title.Text, "As found, "+want.Name) {
+	if s.calc.value.DumpText() != want.Text || !strings.Contains(s.calc.title.DumpText(), "As found, "+want.Name) {
 		t.Errorf("a click on %s opens %q", want.Name, s.calc.DumpText())
 	}
 }
@@ -226,12 +226,12 @@ func TestFigureOpens(t *testing.T) {
 func TestFollowsEdits(t *testing.T) {
 	f, s := shown(t, "baling-press.yaml")
 	clickStep(t, s, "1.RV1: relief spill")
-	before := s.calc.value.Text
+	before := s.calc.value.DumpText()
 	if err := f.Document.Set(f.Solution().Circuits[0].Circuit.Name+"/RV1.crack", "200 bar"); err != nil {
 		t.Fatal(err)
 	}
 	f.Edited()
-	if s.calc.value.Text == before || !strings.Contains(s.calc.title.Text, "RV1: relief spill") || !strings.Contains(s.calc.numbers.Text, "pc = 200 bar") {
+	if s.calc.value.DumpText() == before || !strings.Contains(s.calc.title.DumpText(), "RV1: relief spill") || !strings.Contains(s.calc.numbers.DumpText(), "pc = 200 bar") {
 		t.Errorf("after the edit: %q", s.calc.DumpText())
 	}
 }
@@ -242,13 +242,13 @@ func TestLocalAndUnits(t *testing.T) {
 	f.Station.Changed(station.Settings)
 	f.Win.Canvas().Capture() // the figure names its parts when it is drawn
 	clickStep(t, s, "1.RV1: relief spill")
-	if !strings.Contains(s.calc.value.Text, "74,96\u202fkJ") || !strings.Contains(part(t, s.steps.Parts(), "1.RV1: relief spill").Text, "74,96") {
-		t.Errorf("with a comma: %q", s.calc.value.Text)
+	if !strings.Contains(s.calc.value.DumpText(), "74,96\u202fkJ") || !strings.Contains(part(t, s.steps.Parts(), "1.RV1: relief spill").Text, "74,96") {
+		t.Errorf("with a comma: %q", s.calc.value.DumpText())
 	}
 	f.Comma, f.Units = false, units.SI
 	f.Station.Changed(station.Settings)
-	if !strings.Contains(s.calc.value.Text, "74\u202f960\u202fJ") {
-		t.Errorf("in SI: %q", s.calc.value.Text)
+	if !strings.Contains(s.calc.value.DumpText(), "74\u202f960\u202fJ") {
+		t.Errorf("in SI: %q", s.calc.value.DumpText())
 	}
 }
 

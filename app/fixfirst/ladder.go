@@ -53,7 +53,7 @@ func numbered(name string, i int) string {
 	return fmt.Sprintf("%s.%d", name, i+1)
 }
 
-func (l *ladder) text(name, text string, importance widget.Importance) *widget.Label {
+func (l *ladder) text(name, text string, importance widget.Importance) *widgets.Text {
 	t := widgets.Wrapped(name)
 	t.Importance = importance
 	t.SetText(l.ctx.Local(text))

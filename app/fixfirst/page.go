@@ -16,7 +16,7 @@ import (
 type Page struct {
 	ctx     station.Context
 	content fyne.CanvasObject
-	say     *widget.Label // while there is nothing to show, or it is of an older drawing
+	say     *widgets.Text // while there is nothing to show, or it is of an older drawing
 	bar     *widget.ProgressBar
 	working *fyne.Container
 	list    *fyne.Container

@@ -33,11 +33,11 @@ type curves struct {
 	cooler  *trialSlider
 	air     *trialSlider
 	tank    *trialSlider
-	note    *widget.Label
+	note    *widgets.Text
 	take    *widgets.Button
 	back    *widgets.Button
 	body    *fyne.Container
-	empty   *widget.Label
+	empty   *widgets.Text
 
 	runs  []*audit.CircuitRun // studied
 	plot  figures.Plot
@@ -229,7 +229,7 @@ func (c *curves) say(failed string) {
 	case !same:
 		text = "On trial: the audit itself is unchanged until you put it in."
 	}
-	if c.note.Text != text {
+	if c.note.DumpText() != text {
 		c.note.SetText(text)
 	}
 	for _, b := range []*widgets.Button{c.take, c.back} {

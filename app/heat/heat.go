@@ -24,17 +24,17 @@ type Heat struct {
 	table   *widgets.FigureTable
 	oil     *temperature
 	air     *temperature
-	empty   *widget.Label
+	empty   *widgets.Text
 	tableOf *fyne.Container // the table with its head, hidden while there is none
-	fault   *widget.Label
-	basis   *widget.Label
-	caution *widget.Label
-	hot     *widget.Label
+	fault   *widgets.Text
+	basis   *widgets.Text
+	caution *widgets.Text
+	hot     *widgets.Text
 	curves  *curves
 	section *section
 	warmth  *widgets.FigureTable
 	request *widgets.TipButton
-	missing *widget.Label
+	missing *widgets.Text
 
 	head []string // of warmth, as last worked out
 	rows []widgets.FigureRow

@@ -13,6 +13,7 @@ import (
 	"barlitre/audit"
 	"barlitre/audit/figures"
 	"barlitre/audit/pen"
+	"barlitre/circuit"
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
 )
@@ -109,15 +110,18 @@ func (p *plot) tapped(part widgets.Part, x, _ float64) {
 
 // clock moves the line and says what each circuit puts in at that instant.
 func (p *plot) clock() {
-	t := p.ctx.Clock()
-	if len(p.stack.Lanes) == 0 {
+	t, s := p.ctx.Clock(), p.ctx.Solution()
+	if s == nil || len(p.stack.Lanes) == 0 {
 		p.line.Hide()
 		p.now.SetText("")
 		return
 	}
 	parts := []string{"at " + p.ctx.Text(t, units.Time, 4)}
-	for _, l := range p.stack.Lanes {
-		parts = append(parts, l.Title+" "+p.ctx.Text(p.unit.ToSI(l.At(t)), units.Power, 3))
+	for _, c := range s.Circuits { // as the sheets say it: the layers stand at fewer instants than the tracks
+		if i := p.ctx.Duty(); i < len(c.Duties) && c.Duties[i].Balance != nil {
+			heat := c.Duties[i].Plot.PowerAt(t, func(x circuit.Channel) bool { return x.Role == circuit.Loss && x.Sink == circuit.ToOil })
+			parts = append(parts, c.Circuit.Name+" "+p.ctx.Text(heat, units.Power, 3))
+		}
 	}
 	if text := strings.Join(parts, "  ·  "); text != p.now.Text {
 		p.now.SetText(text)

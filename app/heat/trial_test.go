@@ -21,8 +21,8 @@ func TestSlidersAndSheet(t *testing.T) {
 	before, revision := top(), c.Document.Revision()
 	slider := widgets.Named("heat.slider.cooler").(*widgets.Slider)
 	slider.SetValue(0)
-	if hot := top(); hot < before+20 || c.Document.Revision() != revision || !strings.Contains(h.curves.note.Text, "On trial") {
-		t.Errorf("without cooler %.1f °C after %.1f °C, %q", hot, before, h.curves.note.Text)
+	if hot := top(); hot < before+20 || c.Document.Revision() != revision || !strings.Contains(h.curves.note.DumpText(), "On trial") {
+		t.Errorf("without cooler %.1f °C after %.1f °C, %q", hot, before, h.curves.note.DumpText())
 	}
 	h.curves.back.OnTapped()
 	if got := top(); got != before {

@@ -22,17 +22,17 @@ type decision struct {
 	ctx       station.Context
 	content   fyne.CanvasObject
 	title     *widget.Label
-	verdict   *widget.Label
-	credit    *widget.Label // what of the saving could be had without the proposal
-	oil       *widget.Label // what the oil temperature found does to the saving
-	warnings  *widget.Label
+	verdict   *widgets.Text
+	credit    *widgets.Text // what of the saving could be had without the proposal
+	oil       *widgets.Text // what the oil temperature found does to the saving
+	warnings  *widgets.Text
 	figure    *widgets.Figure
 	bars      figures.Bars
 	of        [][2]audit.Figure // of the bars
 	table     *widgets.FigureTable
 	cost      *widgets.FigureTable
-	none      *widget.Label
-	published *widget.Label
+	none      *widgets.Text
+	published *widgets.Text
 }
 
 // numbered names the parts of the second proposal and of those after it.
@@ -202,7 +202,7 @@ func (d *decision) loadCost(r *audit.Decision, c *audit.Comparison) {
 		if c.Missing == "" {
 			d.none.SetText(strings.ToUpper(n.None[:1]) + n.None[1:] + ".")
 			if !cost.Given {
-				d.none.SetText(d.none.Text + " Type it at the left, under the cost of " + r.Proposal + ".")
+				d.none.SetText(d.none.DumpText() + " Type it at the left, under the cost of " + r.Proposal + ".")
 			}
 		}
 		setHidden(d.none, d.none.Text == "")

@@ -57,6 +57,10 @@ func words(c *stationtest.Context) string {
 			if x.Visible() {
 				out = append(out, x.Text)
 			}
+		case *widgets.Text:
+			if x.Visible() {
+				out = append(out, x.DumpText())
+			}
 		case *fyne.Container:
 			for _, o := range x.Objects {
 				walk(o)

@@ -22,13 +22,13 @@ type Payback struct {
 	ctx     station.Context
 	content fyne.CanvasObject
 	inputs  *inputs
-	empty   *widget.Label
+	empty   *widgets.Text
 	alone   *widgets.FigureTable // the year of each circuit, where there is nothing to compare
 	results *fyne.Container
 	shown   []*decision
 	below   *fyne.Container // basis and exclusions
-	basis   *widget.Label
-	left    *widget.Label
+	basis   *widgets.Text
+	left    *widgets.Text
 	scroll  *container.Scroll // of the results
 	pages   *pages
 }

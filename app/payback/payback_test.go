@@ -79,8 +79,8 @@ func TestInputsChangeThePayback(t *testing.T) {
 				t.Errorf("price %s: %q is missing in %s", step.price, w, text)
 			}
 		}
-		if !strings.Contains(p.shown[0].verdict.Text, units.Number(step.cost[1]/saving, 2)+" years") {
-			t.Errorf("the verdict is %q", p.shown[0].verdict.Text)
+		if !strings.Contains(p.shown[0].verdict.DumpText(), units.Number(step.cost[1]/saving, 2)+" years") {
+			t.Errorf("the verdict is %q", p.shown[0].verdict.DumpText())
 		}
 	}
 }
@@ -108,8 +108,8 @@ func TestOriginNoteCreditAndCO2(t *testing.T) {
 	if f.Price.Origin != "assumed" || f.Price.Note != "read: from a bill" || f.CO2Year != 2023 || f.CO2Basis != "market" || len(c.Failed) > 0 {
 		t.Errorf("the file has %v, %q, %d, %q; failed: %v", f.Price.Origin, f.Price.Note, f.CO2Year, f.CO2Basis, c.Failed)
 	}
-	if !strings.Contains(p.basis.Text, "2023, market-based") || strings.Contains(p.basis.Text, "is credited") != f.CreditReturned {
-		t.Errorf("the basis says %q", p.basis.Text)
+	if !strings.Contains(p.basis.DumpText(), "2023, market-based") || strings.Contains(p.basis.DumpText(), "is credited") != f.CreditReturned {
+		t.Errorf("the basis says %q", p.basis.DumpText())
 	}
 }
 
@@ -142,11 +142,11 @@ func TestBarsOpen(t *testing.T) {
 func TestPublishedAndExclusions(t *testing.T) {
 	c, p := shown(t, press)
 	r := c.Report()
-	if text := p.shown[0].published.Text; !strings.Contains(text, r.Decisions[0].Published.Text) || !strings.Contains(text, r.Decisions[0].Published.Explanation) {
+	if text := p.shown[0].published.DumpText(); !strings.Contains(text, r.Decisions[0].Published.Text) || !strings.Contains(text, r.Decisions[0].Published.Explanation) {
 		t.Errorf("published: %q", text)
 	}
 	for _, e := range r.Exclusions {
-		if !strings.Contains(p.left.Text, e) {
+		if !strings.Contains(p.left.DumpText(), e) {
 			t.Errorf("%q is not among what is left out", e)
 		}
 	}
@@ -182,8 +182,8 @@ func TestCostAndPriceFromNothing(t *testing.T) {
 	}
 	again(c, p)
 	f := c.Document.File()
-	if f.HasPrice || f.Circuits[1].Cost.Given || !p.Mend() || p.shown[0].cost.Table.Visible() || !strings.Contains(p.shown[0].none.Text, "Type it at the left") {
-		t.Fatalf("price %v, cost %v; %q", f.HasPrice, f.Circuits[1].Cost.Given, p.shown[0].none.Text)
+	if f.HasPrice || f.Circuits[1].Cost.Given || !p.Mend() || p.shown[0].cost.Table.Visible() || !strings.Contains(p.shown[0].none.DumpText(), "Type it at the left") {
+		t.Fatalf("price %v, cost %v; %q", f.HasPrice, f.Circuits[1].Cost.Given, p.shown[0].none.DumpText())
 	}
 	c.Show(p, 1190, 590)
 	c.Look("payback-nothing")

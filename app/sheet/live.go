@@ -119,12 +119,7 @@ func (l *live) totals() []liveRow {
 
 // powerAt adds the powers of some channels at an instant [W].
 func powerAt(p *audit.Plot, t float64, of func(circuit.Channel) bool) float64 {
-	sum := 0.0
-	for i, c := range p.Channels {
-		if of(c) {
-			sum += p.Powers[i].At(t)
-		}
-	}
+	sum := p.PowerAt(t, of)
 	if math.Abs(sum) < smallestPower {
 		return 0
 	}

@@ -19,10 +19,10 @@ import (
 type Page struct {
 	ctx     station.Context
 	content *container.Scroll
-	say     *widget.Label
+	say     *widgets.Text
 	bar     *widget.ProgressBar
 	circuit *widgets.Select // of several as found
-	verdict *widget.Label
+	verdict *widgets.Text
 	list    *fyne.Container
 	plan    *sitecheck.Plan
 	comma   string

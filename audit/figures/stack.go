@@ -27,26 +27,6 @@ type StackLane struct {
 	MeanNote string
 }
 
-// At returns the height of the stack at x, linear between the points; at a step the
-// value after it, outside the nearest end.
-func (l StackLane) At(x float64) float64 {
-	edges := l.edges()
-	if len(edges) == 0 {
-		return 0
-	}
-	top := edges[len(edges)-1]
-	i := sort.Search(len(l.X), func(i int) bool { return l.X[i] > x })
-	switch {
-	case len(top) == 0:
-		return 0
-	case i == 0:
-		return top[0]
-	case i == len(l.X):
-		return top[i-1]
-	}
-	return top[i-1] + (top[i]-top[i-1])*(x-l.X[i-1])/(l.X[i]-l.X[i-1])
-}
-
 // Stack shows lanes of stacked areas one below the other, all on one scale.
 type Stack struct {
 	Lanes    []StackLane

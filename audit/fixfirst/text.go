@@ -107,7 +107,7 @@ func (w words) money(x float64) string {
 	if math.IsNaN(x) || w.currency == "" {
 		return "no price"
 	}
-	return units.Number(x, 4) + " " + w.currency
+	return units.Number(x, 4) + "\u202f" + w.currency
 }
 
 func seconds(t float64) string { return units.Format(t, units.Preferred(units.Time, units.Metric), 3) }

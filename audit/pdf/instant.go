@@ -65,13 +65,7 @@ func middleOfMost(run *audit.DutyRun) float64 {
 
 // drawnAt is the power drawn at time t [W].
 func drawnAt(p *audit.Plot, t float64) float64 {
-	sum := 0.0
-	for i, c := range p.Channels {
-		if c.Role == circuit.Supply {
-			sum += p.Powers[i].At(t)
-		}
-	}
-	return sum
+	return p.PowerAt(t, func(c circuit.Channel) bool { return c.Role == circuit.Supply })
 }
 
 // run returns the duty of a circuit that is drawn, nil where it is not solved.
