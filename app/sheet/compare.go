@@ -43,6 +43,7 @@ func (p *panel) newCompare() {
 	p.compare = widgets.Name(newLink("", func() {
 		p.comparing = !p.comparing
 		p.rebuildHere()
+		p.bringCompare()
 	}), "sheet.compare")
 	p.compare.lead = true
 	p.compareLine = container.New(wordsLine{}, p.compare)
@@ -104,7 +105,10 @@ func (r *besideRow) fill() {
 		r.text.Color = pal.Ink
 	}
 	mark := pick(same, "= ", "≠ ")
-	room := float64(r.p.width()/k) - 70
+	room := float64(r.p.width() / k)
+	if !same {
+		room -= 70 // of the link
+	}
 	name := pen.Shorten(other.Name, 11, !same, room-pen.TextWidth(mark+": "+theirs, 11, !same))
 	r.text.Text = pen.Shorten(mark+name+": "+theirs, 11, !same, room)
 	r.text.Refresh()

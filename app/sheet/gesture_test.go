@@ -490,6 +490,16 @@ func TestViewByKeys(t *testing.T) {
 	if e.zoom <= before || float64(at.X) < 0.3*w || float64(at.X) > 0.7*w || float64(at.Y) < 0.3*h || float64(at.Y) > 0.7*h {
 		t.Errorf("zoom %g, was %g; RV1 at %v of %g, %g", e.zoom, before, at, w, h)
 	}
+	for _, id := range []string{"C1", "P1", "V1"} { // with its label, whichever side that is on
+		e.choose(id, false)
+		b.typed(0, "z")
+		x, y, lw, lh, _ := e.sheet.LabelBox(id)
+		for _, p := range []fyne.Position{e.onSheet(x, y), e.onSheet(x+lw, y+lh)} {
+			if float64(p.X) < 0 || float64(p.Y) < 0 || float64(p.X) > w || float64(p.Y) > h {
+				t.Errorf("the label of %s is cut: a corner is at %v of %g, %g", id, p, w, h)
+			}
+		}
+	}
 	b.key(0, fyne.KeyHome)
 	if !e.fitted {
 		t.Error("Home does not show the whole sheet")

@@ -60,7 +60,7 @@ func (h *hover) recolour() {
 	pal, k := h.e.s.ctx.Palette(), widgets.Scale()
 	h.paper.FillColor, h.paper.StrokeColor, h.paper.StrokeWidth, h.paper.CornerRadius = pal.Ground, pal.Edge, 1, 4
 	for i, t := range h.lines {
-		t.Color, t.TextSize, t.TextStyle.Bold = pal.Ink, 11*k, i == 0
+		t.Color, t.TextSize, t.TextStyle.Bold = pal.Ink, 11*k, i == 0 && h.told == nil
 	}
 }
 
@@ -117,8 +117,9 @@ func (h *hover) fill() {
 		if i < len(text) {
 			s = text[i]
 		}
-		if t.Text != s {
-			t.Text = s
+		// What is read has a heading; what is told is one sentence over several rows.
+		if bold := i == 0 && h.told == nil; t.Text != s || t.TextStyle.Bold != bold {
+			t.Text, t.TextStyle.Bold = s, bold
 			t.Refresh()
 		}
 	}

@@ -215,7 +215,11 @@ func (l *live) draw(p pen.Pen, w, _ float64) []widgets.Part {
 		p.Text(pen.Pt{Y: 25}, text, 11, pal.Secondary, pen.Left, false)
 		return nil
 	}
-	p.Text(pen.Pt{Y: 25}, "At "+s.ctx.Text(s.ctx.Clock(), units.Time, 4)+pick(s.ctx.Doc().Current(), "", ", before the last edit"), 11, pal.Secondary, pen.Left, false)
+	head := "At "
+	if _, b := l.p.at(); b != nil && len(l.p.many) > 1 {
+		head = b.ID + " at " // several are edited together; this is the one whose values these are
+	}
+	p.Text(pen.Pt{Y: 25}, head+s.ctx.Text(s.ctx.Clock(), units.Time, 4)+pick(s.ctx.Doc().Current(), "", ", before the last edit"), 11, pal.Secondary, pen.Left, false)
 	var parts []widgets.Part
 	column := 84.0
 	if len(rows[0].values) > 1 {

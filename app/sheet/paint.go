@@ -61,12 +61,13 @@ func (e *editor) draw(p pen.Pen, sh *figures.Sheet, legend bool) {
 	}
 	ox, oy := sh.Origin()
 	p.ClipRect(0, 0, w, h)
+	opt := e.opt
 	if bare := e.laying.bare; bare != nil && sh == e.sheet {
 		k := float64(widgets.Scale())
 		p.Text(pen.Pt{X: 12 * k, Y: 20 * k}, "Laying the lines …", 12.5*k, e.s.ctx.Palette().Secondary, pen.Left, false)
-		sh = bare
+		sh, opt.HideLabels = bare, true
 	}
-	sh.Draw(p, e.x+ox*e.zoom, e.y+oy*e.zoom, e.zoom, e.state, e.opt)
+	sh.Draw(p, e.x+ox*e.zoom, e.y+oy*e.zoom, e.zoom, e.state, opt)
 	p.Unclip()
 	if legend && e.state != nil && e.legendHeight() > 0 && e.ownLegend() {
 		e.drawLegend(p, w, h)

@@ -7,6 +7,7 @@ import (
 	"fyne.io/fyne/v2"
 
 	"barlitre/app/widgets"
+	"barlitre/audit/pen"
 )
 
 // TestSeveralBlocksAreEditedTogether: three relief valves with settings of their own show
@@ -19,6 +20,12 @@ func TestSeveralBlocksAreEditedTogether(t *testing.T) {
 	b.click(0, b.middle(0, "RV3"), fyne.KeyModifierShift)
 	if title, sub := b.s.panel.titles(); title != "RV1, RV2, RV3" || !strings.Contains(sub, "3 of kind relief valve") {
 		t.Errorf("the panel is of %q, %q", title, sub)
+	}
+	b.solved()
+	p := pen.NewRecorder()
+	b.s.panel.live.draw(p, 270, 200)
+	if head := p.Boxes()[0].Text; !strings.HasPrefix(head, "RV3 at ") {
+		t.Errorf("the values of one of several stand under %q", head)
 	}
 	r := b.field("crack")
 	if r.field.Text != "" || r.field.PlaceHolder != severalWord {
@@ -89,6 +96,12 @@ func TestCompareWithTheOtherCircuit(t *testing.T) {
 	}
 	alone := len(b.s.panel.live.rows())
 	widgets.Named("sheet.compare").(*link).do()
+	if text := b.s.panel.compare.Text; !strings.HasPrefix(text, "Stop comparing") {
+		t.Errorf("while it compares the link says %q", text)
+	}
+	if text := b.field("override").beside.text.Text; !strings.HasPrefix(text, "= Pump-controlled: ") {
+		t.Errorf("there is room for the whole name, and it says %q", text)
+	}
 	if rows := b.s.panel.live.rows(); alone == 0 || len(rows) != 2*alone || strings.TrimSpace(rows[1].name) != "Pump-controlled" || len(rows[1].values) != 1 {
 		t.Errorf("the values now of both circuits: %v, were %d rows of one", rows, alone)
 	}

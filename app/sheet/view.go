@@ -113,6 +113,9 @@ func (e *editor) fitSelection() {
 	for _, b := range e.boxes {
 		if e.selected[b.id] {
 			add(b.x, b.y, b.w, b.h)
+			if x, y, w, h, ok := e.sheet.LabelBox(b.id); ok {
+				add(x, y, w, h)
+			}
 		}
 	}
 	marks := []figures.SheetMark{{Note: -1, Group: e.group}}

@@ -31,6 +31,16 @@ func (s *Sheet) Ports() []SheetPort {
 	return out
 }
 
+// LabelBox is the room that the label of a block has, in the circuit's own coordinates [M].
+func (s *Sheet) LabelBox(block string) (x, y, w, h float64, ok bool) {
+	for _, l := range s.labels {
+		if l.part >= 0 && s.parts[l.part].id == block && !s.parts[l.part].copied {
+			return l.box.Min.X, l.box.Min.Y, l.box.Max.X - l.box.Min.X, l.box.Max.Y - l.box.Min.Y, true
+		}
+	}
+	return 0, 0, 0, 0, false
+}
+
 // Lines returns what a line that is drawn consists of: places in Circuit.Lines,
 // ascending, and the ids of the junctions between them.
 func (s *Sheet) Lines(net int) (lines []int, junctions []string) {
