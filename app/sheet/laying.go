@@ -9,8 +9,8 @@ import (
 )
 
 // manyBlocks is from how many blocks on lines and labels are laid behind the window. Until
-// they are, the sheet has plain elbows where lines must change, and one that was just opened
-// has no lines and says so.
+// they are, the sheet has plain elbows where lines must change, soon followed by these lines
+// laid alone; one that was just opened has no lines and says so.
 const manyBlocks = 80
 
 // laying is what is laid behind the window.
@@ -34,8 +34,11 @@ func (e *editor) layBehind() {
 		return // when that is done, it is compared with what is then wanted
 	}
 	l.busy = true
-	c, run, before := e.drawn, e.labels, l.exact
+	c, run, before, rough := e.drawn, e.labels, l.exact, e.sheet
 	go func() {
+		if near, ok := rough.Near(); ok {
+			post(func() { e.showNear(c, rough, near) })
+		}
 		exact := before
 		if before == nil || before.Circuit() != c {
 			exact = before.Next(c)
@@ -63,6 +66,13 @@ func (e *editor) laidBehind(c *circuit.Circuit, run *audit.CircuitRun, exact, fu
 	}
 	if l.ready = func() { e.showLaid(c, exact, full) }; e.gesture.kind == idle || e.gesture.kind == cancelled {
 		e.takeLaid()
+	}
+}
+
+// showNear shows the lines at what was moved, while all are being laid.
+func (e *editor) showNear(c *circuit.Circuit, rough, near *figures.Sheet) {
+	if e.sheet == rough && (e.gesture.kind == idle || e.gesture.kind == cancelled) {
+		e.showLaid(c, near, near)
 	}
 }
 

@@ -24,7 +24,7 @@ func drawn(sh *figures.Sheet) (out [][2][2]float64) {
 }
 
 // A block of a large circuit moves at once, with plain elbows at its ports alone; the lines
-// that are laid then are those of the file opened anew.
+// there are laid first, and all that are laid then are those of the file opened anew.
 func TestLargeMoveLaysBehind(t *testing.T) {
 	b := openLarge(t, 90)
 	e := b.s.editors[0]
@@ -55,6 +55,25 @@ func TestLargeMoveLaysBehind(t *testing.T) {
 	}
 	if same == len(stayed) || same < len(stayed)*9/10 {
 		t.Errorf("%d of %d pieces of line stayed", same, len(stayed))
+	}
+	rough := e.sheet
+	for e.sheet == rough { // the lines at V2 are laid first
+		(<-b.posted)()
+	}
+	if !e.laying.busy {
+		t.Error("all was laid before the lines at V2 were shown")
+	}
+	for _, p := range drawn(e.sheet) { // they keep out of the blocks, as all lines do
+		for _, box := range e.boxes {
+			level, upright := p[0][1] == p[1][1], p[0][0] == p[1][0]
+			in := func(v, from, size float64) bool { return v > from+1 && v < from+size-1 }
+			if x0, x1 := min(p[0][0], p[1][0]), max(p[0][0], p[1][0]); !before[p] && level && in(p[0][1], box.y, box.h) && x1 > box.x+1 && x0 < box.x+box.w-1 {
+				t.Errorf("the line at %v runs through %s", p, box.id)
+			}
+			if y0, y1 := min(p[0][1], p[1][1]), max(p[0][1], p[1][1]); !before[p] && upright && in(p[0][0], box.x, box.w) && y1 > box.y+1 && y0 < box.y+box.h-1 {
+				t.Errorf("the line at %v runs through %s", p, box.id)
+			}
+		}
 	}
 	b.solved()
 	want := figures.NewSheet(e.drawn).Labelled(e.labels.Duties...)

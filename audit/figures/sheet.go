@@ -24,8 +24,9 @@ type Sheet struct {
 	notes     []sheetNote
 	veil      *veil // what is not drawn, nil = all is
 	laid      *routing
-	seen      *seen       // nil before there are results
-	box       drawing.Box // of everything that may be drawn, without legend
+	stale     map[int]bool // nets of a rough sheet that are to be laid
+	seen      *seen        // nil before there are results
+	box       drawing.Box  // of everything that may be drawn, without legend
 }
 
 // sheetMargin is the free room round the drawing [M].

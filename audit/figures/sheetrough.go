@@ -1,6 +1,7 @@
 package figures
 
 import (
+	"maps"
 	"slices"
 
 	"barlitre/audit/pen"
@@ -22,16 +23,20 @@ func (before *Sheet) Rough(c *circuit.Circuit) *Sheet {
 	boxes, nets := s.routeInput()
 	r := &routing{boxes, nets, make([]drawing.Route, len(nets))}
 	stayed := map[int]int{} // net before, by net
+	s.stale = map[int]bool{}
 	for i := range nets {
 		if j := before.laid.find(nets[i]); j >= 0 {
 			stayed[i] = j
 			r.routes[i] = before.laid.routes[j]
 			r.routes[i].Net = i
+			s.stale[i] = before.laid.covered(r.routes[i], boxes)
 		} else {
 			r.routes[i] = star(i, nets[i])
+			s.stale[i] = true
 		}
 		s.nets[i].route = r.routes[i]
 	}
+	maps.DeleteFunc(s.stale, func(_ int, stale bool) bool { return !stale })
 	s.laid = r
 	for i := range s.nets {
 		s.stretches = append(s.stretches, s.cut(i, nets[i])...)
@@ -40,6 +45,44 @@ func (before *Sheet) Rough(c *circuit.Circuit) *Sheet {
 	s.keepLabels(before, stayed)
 	s.measure()
 	return s
+}
+
+// nearMost is from how many lines on it is no quicker to lay those alone that must be.
+const nearMost = 24
+
+// Near is a rough sheet with the lines laid that have plain elbows, or that a block was put
+// on, all others as they are; ok is false where these are none, or so many that Next is as
+// quick.
+func (s *Sheet) Near() (near *Sheet, ok bool) {
+	if len(s.stale) == 0 || len(s.stale) > nearMost {
+		return nil, false
+	}
+	boxes, nets := s.routeInput()
+	out := *s
+	out.stale, out.nets = nil, slices.Clone(s.nets)
+	out.laid = &routing{boxes, nets, drawing.RouteSome(boxes, nets, s.laid.routes, s.stale)}
+	for i := range s.stale {
+		out.nets[i].route = out.laid.routes[i]
+	}
+	out.relay(s.stale, nets)
+	out.crossings = drawing.Crossings(out.laid.routes)
+	out.carryLabels(s, nil, s.stale, 0, 0)
+	return &out, true
+}
+
+// covered tells whether one of the boxes that were not there when a route was laid lies on it.
+func (r *routing) covered(route drawing.Route, boxes []drawing.Box) bool {
+	for _, b := range boxes {
+		if b.Max.X-b.Min.X < 1 || slices.Contains(r.boxes, b) {
+			continue // a junction, which lines may pass, or as before
+		}
+		for _, g := range route.Segments {
+			if shared(grown(b, -0.1), grown(segmentBox(g[0], g[1]), -0.4)) > 0 {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // Bare is the sheet without its lines and their labels.

@@ -106,6 +106,50 @@ func RouteAll(blocks []Box, nets []Net) []Route {
 	return routes
 }
 
+// RouteSome is RouteAll for the nets that are told alone: the others stay as they are laid,
+// and are avoided. It is as quick as the nets are few, and no net makes way for another.
+func RouteSome(blocks []Box, nets []Net, laid []Route, lay map[int]bool) []Route {
+	routes := append([]Route(nil), laid...)
+	f, ok := newField(blocks, nets)
+	for i, n := range nets {
+		switch {
+		case !ok && lay[i]:
+			routes[i] = elbows(i, n)
+		case ok && !lay[i]:
+			f.mark(f.treeOf(n, laid[i]), +1)
+		}
+	}
+	if !ok {
+		return routes
+	}
+	for _, i := range routingOrder(nets) {
+		if lay[i] {
+			t := f.grow(nets[i])
+			f.mark(t, +1)
+			routes[i] = f.route(i, nets[i], t)
+		}
+	}
+	return routes
+}
+
+// treeOf is the tree that a route was made of.
+func (f *field) treeOf(n Net, r Route) tree {
+	t := tree{has: map[int]bool{}, on: map[int]bool{}, ports: map[int]terminal{}, stiff: n.Type == Shaft || n.Type == Rod}
+	for _, g := range r.Segments {
+		a, b := f.node(g[0]), f.node(g[1])
+		d := dirOf(f.at(b).sub(f.at(a)))
+		for node := a; node != b && d >= 0 && f.at(node).on(f.at(a), f.at(b)); node += f.delta[d] {
+			f.lay(&t, f.edge(node, d))
+		}
+	}
+	return t
+}
+
+// on tells whether a point lies on the upright or level line between two others.
+func (p Pt) on(a, b Pt) bool {
+	return p.X >= math.Min(a.X, b.X) && p.X <= math.Max(a.X, b.X) && p.Y >= math.Min(a.Y, b.Y) && p.Y <= math.Max(a.Y, b.Y)
+}
+
 // routingOrder: what was laid by hand first, so that the others make way; then mechanical
 // and electric links, since they should be straight, then oil, pilot and drain lines;
 // short nets before long ones.

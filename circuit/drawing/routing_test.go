@@ -330,3 +330,41 @@ func TestPortsFacingEachOtherTakeABranch(t *testing.T) {
 		}
 	}
 }
+
+// RouteSome lays what it is told to and leaves the rest: all that was laid again is joined,
+// leaves its ports properly and shares no line with another net.
+func TestRouteSomeLaysTheOthersRoundWhatStays(t *testing.T) {
+	again := 0
+	for seed := int64(1); seed <= 40; seed++ {
+		blocks, nets := sheet(seed)
+		all := RouteAll(blocks, nets)
+		lay := map[int]bool{}
+		for i := range nets {
+			lay[i] = i%3 == int(seed)%3
+		}
+		some := RouteSome(blocks, nets, all, lay)
+		for i, n := range nets {
+			if !lay[i] {
+				if !reflect.DeepEqual(some[i], all[i]) {
+					t.Fatalf("seed %d: net %d was to stay", seed, i)
+				}
+				continue
+			}
+			again++
+			if !joins(some[i], n) {
+				t.Errorf("seed %d: net %d is not joined", seed, i)
+			}
+			if some[i].Through != all[i].Through && some[i].Through {
+				t.Logf("seed %d: net %d runs through a block or along a line, for what stays is in its way", seed, i)
+			}
+			for _, p := range n.Ports {
+				if !some[i].Through && !leavesProperly(some[i], p) {
+					t.Errorf("seed %d: net %d does not leave %s as it faces", seed, i, p.Name)
+				}
+			}
+		}
+	}
+	if again < 50 {
+		t.Errorf("only %d nets were laid again", again)
+	}
+}
