@@ -135,3 +135,22 @@ func TestCorrections(t *testing.T) {
 		t.Errorf("put right: %+v, %s", p.src().recipe, p.job.failed)
 	}
 }
+
+// What the tracks come to is not worked out any further once it is cancelled.
+func TestWorkingOutIsCancelled(t *testing.T) {
+	t.Cleanup(Inline())
+	c := stationtest.New(t, "")
+	p := New(c)
+	p.Leave = func() {}
+	if err := p.Open("../../../samples/recordings/press-shift.csv"); err != nil {
+		t.Fatal(err)
+	}
+	ctx, stop := context.WithCancel(context.Background())
+	if out := workOut(ctx, c.Doc().File(), p.taking(), p.part); out.found == nil {
+		t.Fatalf("no cycles: %s", out.none)
+	}
+	stop()
+	if out := workOut(ctx, c.Doc().File(), p.taking(), p.part); out.found != nil || out.works != nil || out.rates != nil {
+		t.Errorf("%+v", out)
+	}
+}
