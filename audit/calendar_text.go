@@ -8,14 +8,23 @@ import (
 	"barlitre/audit/thermal"
 )
 
-// spans are the times of the week in which the machine runs, with its duties in the mix of the year; none without a calendar.
-func (c *Calendar) spans() []thermal.Span {
+// spans are the times of the week in which the machine runs, in shifts with one load and in their breaks with another; none
+// without a calendar.
+func (c *Calendar) spans(inShifts, inBreaks int) []thermal.Span {
 	if c == nil || c.Hours == nil {
 		return nil
 	}
 	var out []thermal.Span
 	for _, s := range c.Runs() {
-		out = append(out, thermal.Span{From: s.From, To: s.To, Load: Mix})
+		load := inShifts
+		if s.Break {
+			load = inBreaks
+		}
+		if n := len(out); n > 0 && out[n-1].To == s.From && out[n-1].Load == load {
+			out[n-1].To = s.To
+			continue
+		}
+		out = append(out, thermal.Span{From: s.From, To: s.To, Load: load})
 	}
 	return out
 }
