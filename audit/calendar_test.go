@@ -209,7 +209,7 @@ func TestYearOfCalendars(t *testing.T) {
 			for _, r := range c.Duties {
 				r.Duty.Hours = h.Duty[r.Duty.Name]
 			}
-			y := year(c.Duties, cal)
+			y := year(c.Duties, cal, watts)
 			breaks := float64(pause*days*weeks) / 60
 			worked := float64(minutes*weeks)/60 - breaks
 			idleHours := worked*idle + breaks

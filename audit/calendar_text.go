@@ -29,6 +29,17 @@ func (c *Calendar) spans(inShifts, inBreaks int) []thermal.Span {
 	return out
 }
 
+// standbyOf is what the electric supply of a circuit draws while the machine is off [W].
+func (f *File) standbyOf(c *CircuitEntry) float64 {
+	switch {
+	case c != nil && c.HasStandby:
+		return c.Standby
+	case f.Calendar != nil:
+		return f.Calendar.Standby
+	}
+	return 0
+}
+
 // calendarLines say for the report where the hours of the year come from.
 func (f *File) calendarLines(p printer) []string {
 	c := f.Calendar
@@ -51,6 +62,11 @@ func (f *File) calendarLines(p printer) []string {
 	}
 	if c.Standby > 0 {
 		sum += "; while off the electric supply draws " + p.power(c.Standby) + ", of circuits fed by the mains"
+	}
+	for _, x := range f.Circuits {
+		if x.HasStandby {
+			sum += "; that of " + x.Name + " draws " + p.power(x.Standby)
+		}
 	}
 	out := []string{text, sum + "."}
 	for _, n := range f.found {
