@@ -19,7 +19,7 @@ func (y *year) fillStandby(all string) {
 			name := c.Name
 			field := widgets.Name(widgets.NewField("", func(text string) error { return y.setStandby(name, text) }), fmt.Sprintf("duty.year.standby%d", i+1))
 			y.standby[name] = field
-			y.perCircuit.Add(widgets.FieldRow("… of "+name, field))
+			y.perCircuit.Add(widgets.FieldRow("While off, "+name, field))
 		}
 		y.perCircuit.Refresh()
 	}
