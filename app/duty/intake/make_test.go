@@ -87,6 +87,9 @@ func TestCancel(t *testing.T) {
 		t.Error(err)
 	}
 	(<-queue)()
+	if !p.head.again.Visible() {
+		t.Error("it cannot be begun again")
+	}
 	if late || p.job.says != "" || !strings.Contains(p.head.state.Text, "Cancelled") {
 		t.Errorf("late %v, says %q, state %q", late, p.job.says, p.head.state.Text)
 	}
