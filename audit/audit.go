@@ -138,7 +138,7 @@ func (s *Solution) onAll(ctx context.Context, do func(ctx context.Context, i int
 // conclude draws the years and what follows from them.
 func (s *Solution) conclude() {
 	for _, c := range s.Circuits {
-		c.Year = year(c.Duties, s.File.Calendar)
+		c.Year = year(c.Duties, s.File.Calendar, s.File.standbyOf(s.File.Circuit(c.Circuit.Name)))
 		c.Heat = heatOf(c.Duties, c.Year, s.Oil, s.Air)
 		c.Money = s.Tariff.YearCost(c.Year)
 		c.Services = c.services()

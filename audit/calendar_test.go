@@ -52,9 +52,14 @@ func TestCalendarGivesHours(t *testing.T) {
 	}
 	h := f.Calendar.Hours
 	wants(t, "the year", (h.Work+h.Idle+h.Hold+h.Off)/units.Hour, 8760, 1e-12)
-	spans := f.Calendar.spans()
+	spans := f.Calendar.spans(Mix, Mix)
 	wants(t, "spans", float64(len(spans)), 5, 0)
 	if spans[0] != (thermal.Span{From: 6 * units.Hour, To: 22 * units.Hour, Load: Mix}) || spans[4].To-spans[4].From != 8*units.Hour {
+		t.Errorf("the machine runs %v", spans)
+	}
+	spans = f.Calendar.spans(4, 5) // by hand: three breaks on four days and one on Friday, work before and after each
+	wants(t, "with breaks", float64(len(spans)), 4*7+3, 0)
+	if spans[1] != (thermal.Span{From: 9.75 * units.Hour, To: 10.25 * units.Hour, Load: 5}) || spans[2] != (thermal.Span{From: 10.25 * units.Hour, To: 18 * units.Hour, Load: 4}) {
 		t.Errorf("the machine runs %v", spans)
 	}
 }
@@ -204,7 +209,7 @@ func TestYearOfCalendars(t *testing.T) {
 			for _, r := range c.Duties {
 				r.Duty.Hours = h.Duty[r.Duty.Name]
 			}
-			y := year(c.Duties, cal)
+			y := year(c.Duties, cal, watts)
 			breaks := float64(pause*days*weeks) / 60
 			worked := float64(minutes*weeks)/60 - breaks
 			idleHours := worked*idle + breaks

@@ -8,16 +8,36 @@ import (
 	"barlitre/audit/thermal"
 )
 
-// spans are the times of the week in which the machine runs, with its duties in the mix of the year; none without a calendar.
-func (c *Calendar) spans() []thermal.Span {
+// spans are the times of the week in which the machine runs, in shifts with one load and in their breaks with another; none
+// without a calendar.
+func (c *Calendar) spans(inShifts, inBreaks int) []thermal.Span {
 	if c == nil || c.Hours == nil {
 		return nil
 	}
 	var out []thermal.Span
 	for _, s := range c.Runs() {
-		out = append(out, thermal.Span{From: s.From, To: s.To, Load: Mix})
+		load := inShifts
+		if s.Break {
+			load = inBreaks
+		}
+		if n := len(out); n > 0 && out[n-1].To == s.From && out[n-1].Load == load {
+			out[n-1].To = s.To
+			continue
+		}
+		out = append(out, thermal.Span{From: s.From, To: s.To, Load: load})
 	}
 	return out
+}
+
+// standbyOf is what the electric supply of a circuit draws while the machine is off [W].
+func (f *File) standbyOf(c *CircuitEntry) float64 {
+	switch {
+	case c != nil && c.HasStandby:
+		return c.Standby
+	case f.Calendar != nil:
+		return f.Calendar.Standby
+	}
+	return 0
 }
 
 // calendarLines say for the report where the hours of the year come from.
@@ -42,6 +62,11 @@ func (f *File) calendarLines(p printer) []string {
 	}
 	if c.Standby > 0 {
 		sum += "; while off the electric supply draws " + p.power(c.Standby) + ", of circuits fed by the mains"
+	}
+	for _, x := range f.Circuits {
+		if x.HasStandby {
+			sum += "; that of " + x.Name + " draws " + p.power(x.Standby)
+		}
 	}
 	out := []string{text, sum + "."}
 	for _, n := range f.found {

@@ -118,6 +118,7 @@ const Format = "barlitre/1"
 //	  role: as found | proposal   when not given the first is as found, others are proposals
 //	  note: text
 //	  pump_at_rest: keep | unload | stop
+//	  standby: 30 W               drawn while off by this circuit, where it is not that of the calendar
 //	  retrofit_cost: {low: 20000 EUR, likely: 26000 EUR, high: 35000 EUR, note: text}
 //	  blocks:
 //	    RV1: {kind: relief, crack: 160 bar, at: [12, 30], turn: 0, mirror: no}
@@ -341,6 +342,9 @@ type CircuitEntry struct {
 	Role Role
 	Cost Cost
 	Heat HeatSection // where it differs from that of all circuits
+
+	Standby    float64 // W, drawn by its electric supply while the machine is off, in place of that of the calendar
+	HasStandby bool
 }
 
 // Circuit returns a circuit by name, or nil.

@@ -50,7 +50,7 @@ func (r *reader) circuits(n, root *yaml.Node) {
 
 func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 	s := scope{circuit: name, where: fmt.Sprintf("circuit %q", name)}
-	f := r.fields(s, n, "", "name", "role", "note", "pump_at_rest", "retrofit_cost", "blocks", "lines", "notes", "groups", "bends", "heat")
+	f := r.fields(s, n, "", "name", "role", "note", "pump_at_rest", "standby", "retrofit_cost", "blocks", "lines", "notes", "groups", "bends", "heat")
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
 	}
@@ -64,6 +64,11 @@ func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 	}
 	c.Note = r.text(s, f, "note")
 	c.PumpAtRest = circuit.AtRest(r.word(s, f, "pump_at_rest", string(circuit.Keep), string(circuit.Unload), string(circuit.Stop)))
+	if v, ok := r.optional(s, f, "standby", units.Power); ok {
+		if c.Standby, c.HasStandby = v.SI, true; v.SI < 0 {
+			r.bad(s, f["standby"].value, "standby", "is %s, must not be below 0", v.Text)
+		}
+	}
 	if e, ok := f["retrofit_cost"]; ok {
 		c.Cost = r.cost(s, e.value)
 		if c.Role != Proposal {

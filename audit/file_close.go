@@ -11,7 +11,7 @@ import (
 )
 
 // CloseStrokes makes an axis end where it began by scaling its way back: the strokes of
-// phases, or the speeds of points, below zero.
+// phases, or the speeds of points, below zero; where points give positions, what they go back.
 func (f *File) CloseStrokes(dutyName, axis string) error {
 	i, err := f.dutyNamed(dutyName)
 	if err != nil {
@@ -20,12 +20,12 @@ func (f *File) CloseStrokes(dutyName, axis string) error {
 	d := f.Duties[i]
 	drift, way, known := StrokeDrift(d, axis)
 	back := (way - drift) / 2
-	speed := d.Track(axis, duty.Speed)
+	speed, position := d.Track(axis, duty.Speed), d.Track(axis, duty.Position)
 	switch {
 	case f.Sources[i].File != "":
 		return fmt.Errorf("duty %q is taken from %s; change it there", dutyName, f.Sources[i].File)
-	case !f.isAxis(axis) || !known || speed == nil:
-		return fmt.Errorf("duty %q gives no speed of axis %s that could be scaled", dutyName, axis)
+	case !f.isAxis(axis) || !known:
+		return fmt.Errorf("duty %q gives neither speed nor position of axis %s that could be scaled", dutyName, axis)
 	case math.Abs(drift) <= 1e-9*way:
 		return nil
 	case back <= 1e-9*way || back+drift <= 0:
@@ -34,7 +34,24 @@ func (f *File) CloseStrokes(dutyName, axis string) error {
 	if f.Stages[i] != nil {
 		return f.closeStages(i, axis, (back+drift)/back)
 	}
-	return f.closePoints(i, axis)
+	if speed == nil {
+		return f.setColumn(i, axis, duty.Position, position.Values, closedWay(position.Values, (back+drift)/back))
+	}
+	return f.setColumn(i, axis, duty.Speed, speed.Values, closedSpeeds(d, axis, speed.Values))
+}
+
+// closedWay scales every step back of positions.
+func closedWay(values []float64, scale float64) []float64 {
+	out := slices.Clone(values)
+	for r := 1; r < len(values); r++ {
+		step := values[r] - values[r-1]
+		if step < 0 {
+			step *= scale
+		}
+		out[r] = out[r-1] + step
+	}
+	out[len(out)-1] = values[0]
+	return out
 }
 
 // closeStages scales the strokes of the phases that go back.
@@ -65,11 +82,9 @@ func strokeWithin(d *duty.Duty, axis string, from, to float64) float64 {
 	return s
 }
 
-// closePoints scales the speeds below zero. A speed that changes its sign between two rows
+// closedSpeeds scales the speeds below zero. A speed that changes its sign between two rows
 // shifts its zero with them, so the scale is found by halving.
-func (f *File) closePoints(i int, axis string) error {
-	d := f.Duties[i]
-	values := d.Track(axis, duty.Speed).Values
+func closedSpeeds(d *duty.Duty, axis string, values []float64) []float64 {
 	scaled := func(k float64) []float64 {
 		out := slices.Clone(values)
 		for r, v := range out {
@@ -95,21 +110,26 @@ func (f *File) closePoints(i int, axis string) error {
 			high = mid
 		}
 	}
-	heads, columns, err := f.Table(d.Name)
+	return scaled(high)
+}
+
+// setColumn writes what changed in a track of points.
+func (f *File) setColumn(i int, axis string, what duty.What, old, new []float64) error {
+	heads, columns, err := f.Table(f.Duties[i].Name)
 	if err != nil {
 		return err
 	}
 	k := f.Axes[slices.IndexFunc(f.Axes, func(a duty.Axis) bool { return a.Name == axis })].Kind
-	u := units.Preferred(duty.Speed.Dim(k), units.Metric)
+	u := units.Preferred(what.Dim(k), units.Metric)
 	for c, head := range heads {
-		if name, _, _ := recording.SplitHead(head); name != axis+"."+duty.Speed.String() {
+		if name, _, _ := recording.SplitHead(head); name != axis+"."+what.String() {
 			continue
 		}
-		for r, v := range scaled(high) {
-			if v < 0 {
+		for r, v := range new {
+			if v != old[r] {
 				columns[c][r] = units.FileText(tidy(u, v), u)
 			}
 		}
 	}
-	return f.SetTable(d.Name, heads, columns)
+	return f.SetTable(f.Duties[i].Name, heads, columns)
 }

@@ -30,7 +30,7 @@ type place struct {
 //	RV1.crack             a parameter, in every circuit that has the block
 //	As found/RV1.crack    in one circuit
 //	RV1.crack.origin      what is known of the value: origin, low, high, note
-//	As found/pump_at_rest, note, role, retrofit_cost.low, .likely, .high
+//	As found/pump_at_rest, standby, note, role, retrofit_cost.low, .likely, .high
 //	oil.temperature, air.temperature, energy.price, site.name ...
 //
 // A value that leaves its own low and high takes them along.

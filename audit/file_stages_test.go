@@ -5,6 +5,8 @@ import (
 	"math"
 	"strings"
 	"testing"
+
+	"barlitre/circuit/duty"
 )
 
 const staged = `format: barlitre/1
@@ -147,5 +149,24 @@ func TestCloseStrokes(t *testing.T) {
 		if err := g.CloseStrokes("cycle", "drum"); err == nil || !strings.Contains(err.Error(), "does not go back") {
 			t.Error(err)
 		}
+	}
+}
+
+// An axis that is given by its position ends where it began, its way out unchanged: 0, 300, 120
+// and 20 mm go back 280 mm, of which each step is taken 300/280 times, by hand 107.142857 mm and 0.
+func TestCloseStrokesOfPositions(t *testing.T) {
+	text := strings.Replace(intakeHead, "duties: []", "duties:\n- {name: cycle, points: {t: [0 s, 1 s, 2 s, 3 s], ram.position: [0 mm, 300 mm, 120 mm, 20 mm], ram.load: [5 kN, 5 kN, 5 kN, 5 kN]}}", 1)
+	f := mustParse(t, text)
+	if err := f.CloseStrokes("cycle", "ram"); err != nil {
+		t.Fatal(err)
+	}
+	for r, want := range []float64{0, 0.3, 0.107142857, 0} {
+		if got := f.Duties[0].Track("ram", duty.Position).Values[r]; math.Abs(got-want) > 1e-6 {
+			t.Errorf("row %d: %g m, want %g", r, got, want)
+		}
+	}
+	g := mustParse(t, strings.Replace(text, "ram.position: [0 mm, 300 mm, 120 mm, 20 mm], ", "", 1))
+	if err := g.CloseStrokes("cycle", "ram"); err == nil || !strings.Contains(err.Error(), "neither speed nor position") {
+		t.Error(err)
 	}
 }

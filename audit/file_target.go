@@ -27,7 +27,7 @@ var sections = map[string][]string{
 }
 
 // circuitKeys are what Set reaches of a circuit besides its blocks.
-var circuitKeys = []string{"role", "note", "pump_at_rest"}
+var circuitKeys = []string{"role", "note", "pump_at_rest", "standby"}
 
 // find returns the places that a target of Set names, at least one.
 func (f *File) find(target string) ([]place, error) {

@@ -85,4 +85,4 @@ func TestTemperaturesInResults(t *testing.T) {
 }
 
 // drawnByMachine is the year without cooling [J].
-func (c *CircuitRun) drawnByMachine() float64 { return year(c.Duties, nil).Drawn.Total() }
+func (c *CircuitRun) drawnByMachine() float64 { return year(c.Duties, nil, 0).Drawn.Total() }

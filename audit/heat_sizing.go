@@ -170,7 +170,7 @@ func (h *HeatStudy) fanOff() HeatCheck {
 // reliefBlows turns the highest shaft power into heat, which the return line carries.
 func (h *HeatStudy) reliefBlows() HeatCheck {
 	c := HeatCheck{Case: "relief valve takes all the power", Fault: true, Time: math.NaN(), Highest: math.NaN()}
-	p := h.With(0, h.HotDay)
+	p := h.With(Mix, h.HotDay)
 	flow := 0.0
 	for _, l := range h.Loads {
 		for _, at := range l.At {
@@ -184,6 +184,7 @@ func (h *HeatStudy) reliefBlows() HeatCheck {
 		at.Lines[thermal.ReturnLine] = thermal.Line{{Share: 1, Flow: flow, Heat: h.Peak}}
 	}
 	p.Loads = []thermal.Load{{Name: c.Case, At: []thermal.Point{at}}}
+	p.Spans = []thermal.Span{{From: 0, To: thermal.Week}} // whatever the machine does
 	return h.toAlarm(c, p)
 }
 

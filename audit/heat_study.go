@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 
 	"barlitre/audit/thermal"
 	"barlitre/circuit"
@@ -142,13 +143,48 @@ func (h *HeatStudy) take(s *Solution, t *heatTable) error {
 	}
 	h.Loads = append([]thermal.Load{mix}, t.loads...)
 	h.Plant = h.plant(s.Air)
-	if spans := s.File.Calendar.spans(); len(spans) > 0 {
-		h.Plant.Spans = spans
+	if err := h.byCalendar(s.File.Calendar, t); err != nil {
+		return err
 	}
 	if err := h.Plant.Prepare(); err != nil {
 		return err
 	}
 	h.worst()
+	return nil
+}
+
+// byCalendar lets the machine run as the calendar says: in breaks the duties that stand for them, in the shifts all others
+// and what is left of those, so that the week has the hours of the mix.
+func (h *HeatStudy) byCalendar(c *Calendar, t *heatTable) error {
+	if spans := c.spans(Mix, Mix); len(spans) == 0 {
+		return nil
+	} else {
+		h.Plant.Spans = spans
+	}
+	in, out := make([]float64, len(t.duties)), make([]float64, len(t.duties))
+	allIn, allOut := 0.0, 0.0
+	for i, d := range t.duties {
+		out[i] = c.InBreak(d.Duty.Name, d.Duty.Hours, c.Hours)
+		in[i] = math.Max(0, d.Duty.Hours-out[i])
+		allIn, allOut = allIn+in[i], allOut+out[i]
+	}
+	if !(allIn > 0 && allOut > 0) {
+		return nil
+	}
+	for i := range in {
+		in[i], out[i] = in[i]/allIn, out[i]/allOut
+	}
+	shifts, err := thermal.Mix("the duties in the mix of the shifts", t.loads, in)
+	if err != nil {
+		return err
+	}
+	breaks, err := thermal.Mix("the duties in the mix of the breaks", t.loads, out)
+	if err != nil {
+		return err
+	}
+	n := len(h.Loads)
+	h.Plant.Loads = append(slices.Clone(h.Loads), shifts, breaks)
+	h.Plant.Spans = c.spans(n, n+1)
 	return nil
 }
 
@@ -226,15 +262,17 @@ func (h *HeatStudy) leadsTo() ([]float64, error) {
 	return []float64{week.Ran, top}, nil
 }
 
-// With returns the plant with other loads and another mean of the air.
+// With returns the plant with other loads and another mean of the air; with the mix it does what it does.
 func (h *HeatStudy) With(load int, air float64) thermal.Plant {
 	p := h.Plant
+	if p.Air.Mean = air; load == Mix {
+		return p
+	}
 	p.Spans = nil
 	for _, s := range h.Plant.Spans {
 		s.Load = load
 		p.Spans = append(p.Spans, s)
 	}
-	p.Air.Mean = air
 	return p
 }
 

@@ -318,7 +318,7 @@ func TestSameDuty(t *testing.T) {
 		feed(t, l, []circuit.Sample{{T: 0, Power: []float64{pos, pos}}, {T: 5, Power: []float64{pos, pos}},
 			{T: 5, Power: []float64{neg, neg}}, {T: 10, Power: []float64{neg, neg}}})
 		r := &CircuitRun{Circuit: &circuit.Circuit{Name: "x"}, Duties: []*DutyRun{{Duty: &duty.Duty{Name: "d", Hours: 3600}, Balance: l.Balance(true)}}}
-		r.Year = year(r.Duties, nil)
+		r.Year = year(r.Duties, nil, 0)
 		r.Heat = heatOf(r.Duties, r.Year, 330, 300)
 		return r
 	}

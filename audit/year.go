@@ -36,11 +36,12 @@ type Year struct {
 	Work     []WorkRow
 	Stored   Split
 	Losses   []LossRow
+	Standby  float64 // W, drawn while the machine is off
 }
 
-// year adds up the duties of a circuit. A duty without a balance is named in Missing.
-func year(runs []*DutyRun, cal *Calendar) *Year {
-	y := &Year{Complete: true}
+// year adds up the duties of a circuit, which draws standby [W] while it is off. A duty without a balance is named in Missing.
+func year(runs []*DutyRun, cal *Calendar, standby float64) *Year {
+	y := &Year{Complete: true, Standby: standby}
 	for _, r := range runs {
 		if r.Duty.Hours <= 0 {
 			continue
@@ -72,7 +73,7 @@ func (y *Year) off(cal *Calendar, runs []*DutyRun) {
 			return
 		}
 	}
-	if e := (Split{Off: cal.Standby * cal.Hours.Off}); e.Off > 0 {
+	if e := (Split{Off: y.Standby * cal.Hours.Off}); e.Off > 0 {
 		y.Drawn = y.Drawn.Plus(e)
 		y.Losses = append(y.Losses, LossRow{Block: supplyBlock, Kind: standbyKind, Sink: circuit.ToAir, Energy: e})
 	}

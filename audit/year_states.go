@@ -71,7 +71,7 @@ func (s *Solution) standby(p printer, y *Year) string {
 	if y.Drawn.Off == 0 {
 		return ""
 	}
-	return " + off: " + p.power(s.File.Calendar.Standby) + " × " + p.hours(y.Seconds.Off)
+	return " + off: " + p.power(y.Standby) + " × " + p.hours(y.Seconds.Off)
 }
 
 // offToo puts the hours off into the calculation of what is drawn in a year.

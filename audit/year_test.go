@@ -30,7 +30,7 @@ func TestPublishedEnergyCost(t *testing.T) {
 		{Role: circuit.Loss, Block: "M1", Kind: "electric motor", Sink: circuit.ToAir},
 		{Role: circuit.Loss, Block: "P1", Kind: "slip", Sink: circuit.ToOil}}
 	run := steady(t, 12*250, true, ch, []float64{electric, hydraulic, electric - shaft, shaft - hydraulic})
-	y := year([]*DutyRun{run}, nil)
+	y := year([]*DutyRun{run}, nil, 0)
 	tariff := Tariff{Price: 0.11 / units.KilowattHour, CO2: math.NaN()}
 	cost := tariff.YearCost(y)
 	wants(t, "kWh", y.Drawn.Total()/units.KilowattHour, 44352, 3e-4)
@@ -58,7 +58,7 @@ func TestPublishedCoolerHeat(t *testing.T) {
 	pump, relief := hyd*(1/0.85-1), hyd/2
 	line := relief / 10
 	run := steady(t, 100, true, ch, []float64{hyd/0.85 + 900, hyd - relief - line, 900, pump, relief, line})
-	y := year([]*DutyRun{run}, nil)
+	y := year([]*DutyRun{run}, nil, 0)
 	h := heatOf([]*DutyRun{run}, y, units.ZeroCelsius+60, units.ZeroCelsius+35)
 	row, ok := h.Largest()
 	if !ok {
@@ -93,7 +93,7 @@ func TestYearOfSeveralDuties(t *testing.T) {
 	ch := []circuit.Channel{{Role: circuit.Supply, Block: "M1", Kind: "supply"}, {Role: circuit.Loss, Block: "P1", Kind: "slip", Sink: circuit.ToOil}}
 	a, b := steady(t, 3000, true, ch, []float64{4000, 4000}), steady(t, 1000, false, ch, []float64{1000, 1000})
 	off := steady(t, 0, true, ch, []float64{9000, 9000})
-	y := year([]*DutyRun{a, b, off}, nil)
+	y := year([]*DutyRun{a, b, off}, nil, 0)
 	wants(t, "kWh", y.Drawn.Total()/units.KilowattHour, 12000+1000, 1e-12)
 	wants(t, "cycles", y.Duties[0].Cycles, 3000*360, 1e-12)
 	wants(t, "hours", y.Hours/units.Hour, 4000, 1e-12)
@@ -104,7 +104,7 @@ func TestYearOfSeveralDuties(t *testing.T) {
 		t.Errorf("complete %v, losses %v", y.Complete, y.Losses)
 	}
 	lost := &DutyRun{Duty: &duty.Duty{Name: "night", Hours: 3600}}
-	if y := year([]*DutyRun{a, lost}, nil); y.Complete || len(y.Missing) != 1 || y.Missing[0] != "night" {
+	if y := year([]*DutyRun{a, lost}, nil, 0); y.Complete || len(y.Missing) != 1 || y.Missing[0] != "night" {
 		t.Errorf("a duty without a balance: %+v", y)
 	}
 }
@@ -114,7 +114,7 @@ func TestCreditOnlyIfStated(t *testing.T) {
 	l := NewLedger(ch, nil, 4)
 	feed(t, l, []circuit.Sample{{T: 0, Power: []float64{2000}}, {T: 5, Power: []float64{2000}}, {T: 5, Power: []float64{-1000}}, {T: 10, Power: []float64{-1000}}})
 	run := &DutyRun{Duty: &duty.Duty{Name: "d", Hours: 1000 * units.Hour, Repeats: true}, Balance: l.Balance(true)}
-	y := year([]*DutyRun{run}, nil)
+	y := year([]*DutyRun{run}, nil, 0)
 	price := 0.2 / units.KilowattHour
 	plain := Tariff{Price: price, CO2: 0.5 / units.KilowattHour}.YearCost(y)
 	wants(t, "drawn", plain.Drawn, 200, 1e-12)

@@ -65,7 +65,7 @@ func (s *Station) note(name, text string, importance widget.Importance, bold boo
 // offerClosing puts a button below the note on strokes that do not close.
 func (s *Station) offerClosing(d *cycle.Duty, a cycle.Axis) {
 	drift, way, _ := audit.StrokeDrift(d, a.Name)
-	if s.recorded().File != "" || d.Track(a.Name, cycle.Speed) == nil || math.Abs(drift) <= 1e-6*way {
+	if s.recorded().File != "" || math.Abs(drift) <= 1e-6*way {
 		return
 	}
 	name, axis := d.Name, a.Name

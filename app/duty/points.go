@@ -88,8 +88,10 @@ func decimals(k track) int {
 	for n := 0; n < limit; n++ {
 		scale, fits := math.Pow(10, float64(n)), true
 		for i := 0; i < len(k.values) && fits; i += max(1, len(k.values)/400) {
-			x := k.unit.FromSI(k.values[i])
-			fits = math.Abs(math.Round(x*scale)/scale-x) <= 1e-9*most
+			for _, v := range k.values[i:min(i+2, len(k.values))] { // with the next one: every so manieth may be a round number
+				x := k.unit.FromSI(v)
+				fits = fits && math.Abs(math.Round(x*scale)/scale-x) <= 1e-9*most
+			}
 		}
 		if fits {
 			return n

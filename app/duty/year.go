@@ -31,6 +31,8 @@ type year struct {
 	duties       *widgets.Table
 	warning      *widget.Label
 	fields       map[string]*widgets.Field // by key of the calendar
+	perCircuit   *fyne.Container           // what each circuit draws while off
+	standby      map[string]*widgets.Field // by circuit
 	breaks       *widgets.Select
 	loading      bool
 }
@@ -94,12 +96,13 @@ func (y *year) lay(scroll *container.Scroll) fyne.CanvasObject {
 	}
 	y.breaks = widgets.Name(widgets.NewSelect([]string{"idle", "hold", "off"}, y.setBreaks), "duty.year.in_breaks")
 	rows.Add(widgets.Row("In breaks", y.breaks, nil))
+	y.perCircuit = container.New(&abreast{})
 	head := func(text string) fyne.CanvasObject {
 		return widget.NewLabelWithStyle(text, fyne.TextAlignLeading, fyne.TextStyle{Bold: true})
 	}
 	return container.New(besideBar{}, container.NewVBox(y.warning,
 		container.New(&abreast{}, y.picture, y.states),
-		head("Shifts"), y.shifts, shiftNote, rows, head("What the duties stand for"), y.duties, dutyNote))
+		head("Shifts"), y.shifts, shiftNote, rows, y.perCircuit, head("What the duties stand for"), y.duties, dutyNote))
 }
 
 func (y *year) calendar() *audit.Calendar {
@@ -137,6 +140,7 @@ func (y *year) fill() {
 		}
 		y.fields[f.key].SetValue(value, hint)
 	}
+	y.fillStandby(texts["standby"])
 	y.breaks.SetSelected(string(c.InBreaks))
 	var warnings []string
 	for _, n := range y.s.ctx.Doc().Findings() {

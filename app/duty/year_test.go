@@ -58,6 +58,10 @@ func TestYearInTheWindow(t *testing.T) {
 	fieldTo(t, f, "duty.year.weeks", "46")
 	fieldTo(t, f, "duty.year.stops", "maintenance 40, rebuild 60 h")
 	fieldTo(t, f, "duty.year.standby", "80")
+	fieldTo(t, f, "duty.year.standby2", "25")
+	if c := f.Document.File().Circuits; c[0].HasStandby || !c[1].HasStandby || c[1].Standby != 25 {
+		t.Errorf("standby of the circuits: %v %g", c[1].HasStandby, c[1].Standby)
+	}
 	fieldTo(t, f, "duty.year.idle_time", "12,5")
 	h := f.Document.File().Calendar.Hours
 	worked := (7.25+8.5)*5*46 - 100.0

@@ -82,3 +82,15 @@ func TestLongRecordingIsDrawn(t *testing.T) {
 	}
 	f.Picture("duty-long-near", 1190, 590)
 }
+
+// Times of a long recording are told apart in the table, though every so manieth is a whole second.
+func TestTimesOfALongTableAreToldApart(t *testing.T) {
+	k := track{name: "t"}
+	k.unit.Factor = 1
+	for i := range 400_000 {
+		k.values = append(k.values, 0.01*float64(i))
+	}
+	if n := decimals(k); n != 2 {
+		t.Errorf("%d places", n)
+	}
+}

@@ -58,7 +58,10 @@ func (f *Frame) quit() {
 	})
 }
 
-func (f *Frame) open(path string) {
+func (f *Frame) open(path string) { f.openThen(path, func() {}) }
+
+// openThen is open; next is called when that is over, whether it worked or not.
+func (f *Frame) openThen(path string, next func()) {
 	var problems []circuit.Finding
 	f.perform("Opening "+filepath.Base(path), func(ctx context.Context, tell document.Progress) (err error) {
 		problems, err = f.doc.OpenWith(ctx, path, tell)
@@ -73,6 +76,7 @@ func (f *Frame) open(path string) {
 		default:
 			f.Say("Opened " + path)
 		}
+		next()
 	})
 }
 

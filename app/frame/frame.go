@@ -344,10 +344,10 @@ func (f *Frame) Show() {
 // Open opens what the program was started with: a file, or the first sample.
 func (f *Frame) Open(path string) {
 	if path != "" {
-		f.open(path)
-	} else {
-		f.openSample(firstSample)
-		f.Say("Sample, invented data. File > New and File > Open start an audit of your own; click a block to change it, and the verdict follows.")
+		f.openThen(path, f.offerRecovery)
+		return
 	}
+	f.openSample(firstSample)
+	f.Say("Sample, invented data. File > New and File > Open start an audit of your own; click a block to change it, and the verdict follows.")
 	f.offerRecovery()
 }

@@ -26,6 +26,7 @@ type strip struct {
 	speed   *widgets.Select
 	picker  *widgets.Select
 	plot    figures.Plot
+	asked   [][]valuesAt // by lane, what its series are of
 	area    figures.PlotArea
 	content fyne.CanvasObject
 	own     bool // the picker is being set by the program
@@ -93,6 +94,7 @@ func (s *strip) reload() {
 	s.picker.SetOptions(names)
 	s.picker.SetSelected(d.Name)
 	s.own = false
+	s.asked = nil
 	s.plot = s.lanes(d, file.Axes)
 	s.figure.Refresh()
 }
@@ -121,12 +123,14 @@ func (s *strip) lanes(d *duty.Duty, axes []duty.Axis) figures.Plot {
 			i = len(plot.Lanes)
 			lane[key] = i
 			plot.Lanes = append(plot.Lanes, figures.Lane{Title: tr.Of + " " + tr.What.String(), Unit: u.Label(), Zero: true})
+			s.asked = append(s.asked, nil)
 		}
 		asked := audit.CourseOf(d, tr)
 		y := make([]float64, len(asked.V))
 		for k, v := range asked.V {
 			y[k] = u.FromSI(v)
 		}
+		s.asked[i] = append(s.asked[i], valuesAt{d.Time, tr.Values, u})
 		n := len(plot.Lanes[i].Series)
 		plot.Lanes[i].Series = append(plot.Lanes[i].Series, figures.Series{Name: tr.Of, X: asked.T, Y: y, Role: roles[n%len(roles)], Dash: n > 0})
 		if n > 0 {

@@ -146,12 +146,18 @@ func (playRow) Layout(o []fyne.CanvasObject, size fyne.Size) {
 // atClock writes the time and the values of the tracks at it.
 func (s *strip) atClock() string {
 	text := units.Number(s.f.clock, 4) + " s"
-	for _, l := range s.plot.Lanes {
-		for _, x := range l.Series {
-			text += " · " + units.Number(at(x.X, x.Y, s.f.clock), 3) + " " + l.Unit
+	for i, l := range s.plot.Lanes {
+		for _, x := range s.asked[i] {
+			text += " · " + units.Number(x.unit.FromSI(at(x.t, x.v, s.f.clock)), 3) + " " + l.Unit
 		}
 	}
 	return text
+}
+
+// valuesAt are the rows of a track, all of them: what is drawn of a long one is thinned.
+type valuesAt struct {
+	t, v []float64 // s, SI
+	unit units.Unit
 }
 
 // at is the value at a time; at a step that of the row after it.

@@ -172,8 +172,17 @@ func (p *Plan) StateOf(duty string) State {
 	return ""
 }
 
-// Runs returns the times of the week in which the machine runs: the shifts, and their breaks unless it is off in them. Times that
-// meet are one.
+// InBreak returns the hours a year of a duty that fall in breaks, of the hours that it has.
+func (p *Plan) InBreak(duty string, hours float64, h *Hours) float64 {
+	all := h.Of(p.InBreaks)
+	if p.InBreaks == Off || p.StateOf(duty) != p.InBreaks || !(all > 0) {
+		return 0
+	}
+	return h.Breaks * hours / all
+}
+
+// Runs returns the times of the week in which the machine runs: the shifts, and their breaks unless it is off in them. Times of a
+// kind that meet are one.
 func (p *Plan) Runs() []Stretch {
 	week, _, err := WeekOf(p.Shifts)
 	if err != nil {
@@ -184,10 +193,10 @@ func (p *Plan) Runs() []Stretch {
 		if s.Break && p.InBreaks == Off {
 			continue
 		}
-		if n := len(out); n > 0 && out[n-1].To == s.From {
+		if n := len(out); n > 0 && out[n-1].To == s.From && out[n-1].Break == s.Break {
 			out[n-1].To = s.To
 		} else {
-			out = append(out, Stretch{From: s.From, To: s.To})
+			out = append(out, Stretch{From: s.From, To: s.To, Break: s.Break})
 		}
 	}
 	return out

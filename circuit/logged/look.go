@@ -1,6 +1,7 @@
 package logged
 
 import (
+	"context"
 	"math"
 	"slices"
 
@@ -40,9 +41,9 @@ func Rates(d *duty.Duty, means bool) (out []Rated) {
 }
 
 // Cycles finds cycles and states: by the speeds of the axes, their loads, and the power that
-// both make.
-func Cycles(d *duty.Duty) (*cycles.Result, error) {
-	in, works := cycles.Input{T: d.Time}, Works(d)
+// both make. works are the Works of the duty; the end of ctx is that of the search.
+func Cycles(ctx context.Context, d *duty.Duty, works []Moved) (*cycles.Result, error) {
+	in := cycles.Input{T: d.Time}
 	for _, w := range works {
 		in.Motion = append(in.Motion, w.Speed)
 		if slices.Min(w.Load) != slices.Max(w.Load) { // a load that is the same throughout tells no cycle
@@ -58,7 +59,7 @@ func Cycles(d *duty.Duty) (*cycles.Result, error) {
 			}
 		}
 	}
-	return cycles.Find(in, cycles.Options{})
+	return cycles.Find(in, cycles.Options{Context: ctx})
 }
 
 // Power is what all axes do at each row [W]; of one axis at least.

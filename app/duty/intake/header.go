@@ -20,6 +20,7 @@ type header struct {
 	name, hours  *widgets.Field
 	bar          *widget.ProgressBar
 	stop, make   *widgets.Button
+	again        *widgets.Button // after Cancel
 	running      *fyne.Container
 }
 
@@ -34,6 +35,8 @@ func newHeader(p *Page) *header {
 	h.hours.SetPlaceHolder("none yet")
 	h.bar = widgets.Name(widget.NewProgressBar(), "intake.progress")
 	h.stop = widgets.Name(widgets.NewButton("Cancel", p.interrupt), "intake.cancel")
+	h.again = widgets.Name(widgets.NewButton("Read again", p.readAll), "intake.again")
+	h.again.Hide()
 	h.make = widgets.Name(widgets.NewButton("Make the duty", p.make), "intake.make")
 	h.make.Importance = widget.HighImportance
 	leave := widgets.Name(widgets.NewButton("Back", p.close), "intake.back")
@@ -42,7 +45,7 @@ func newHeader(p *Page) *header {
 		widget.NewLabel("Hours a year"), container.New(widgets.Wide(90), h.hours), layout.NewSpacer())
 	h.content = container.NewVBox(
 		container.NewBorder(nil, nil, nil, container.NewHBox(leave, h.make), h.title),
-		container.NewBorder(nil, nil, own, h.running, h.state))
+		container.NewBorder(nil, nil, own, container.NewHBox(h.again, h.running), h.state))
 	return h
 }
 
@@ -81,6 +84,7 @@ func (h *header) fill() {
 	}
 	setText(h.state, p.ctx.Local(text))
 	show(h.running, p.job.says != "")
+	show(h.again, p.job.says == "" && p.job.interrupted)
 	h.bar.SetValue(p.job.share)
 	word := "Make the duty"
 	if p.again != "" {
@@ -114,7 +118,7 @@ func (h *header) says() (string, widget.Importance) {
 	case p.job.failed != "":
 		return "⚠ " + p.job.failed, widget.DangerImportance
 	case p.job.interrupted:
-		return "Cancelled. Nothing was changed; change the recipe or the tracks to go on.", widget.DangerImportance
+		return "Cancelled. Nothing was changed.", widget.DangerImportance
 	}
 	if why := p.ready(); why != "" {
 		return why, widget.WarningImportance

@@ -87,6 +87,9 @@ func TestCancel(t *testing.T) {
 		t.Error(err)
 	}
 	(<-queue)()
+	if !p.head.again.Visible() {
+		t.Error("it cannot be begun again")
+	}
 	if late || p.job.says != "" || !strings.Contains(p.head.state.Text, "Cancelled") {
 		t.Errorf("late %v, says %q, state %q", late, p.job.says, p.head.state.Text)
 	}
@@ -133,5 +136,24 @@ func TestCorrections(t *testing.T) {
 	}
 	if separator(","); p.rec == nil || p.rec.Find("v") == nil || p.rec.Find("v").Unit != "m/s" {
 		t.Errorf("put right: %+v, %s", p.src().recipe, p.job.failed)
+	}
+}
+
+// What the tracks come to is not worked out any further once it is cancelled.
+func TestWorkingOutIsCancelled(t *testing.T) {
+	t.Cleanup(Inline())
+	c := stationtest.New(t, "")
+	p := New(c)
+	p.Leave = func() {}
+	if err := p.Open("../../../samples/recordings/press-shift.csv"); err != nil {
+		t.Fatal(err)
+	}
+	ctx, stop := context.WithCancel(context.Background())
+	if out := workOut(ctx, c.Doc().File(), p.taking(), p.part); out.found == nil {
+		t.Fatalf("no cycles: %s", out.none)
+	}
+	stop()
+	if out := workOut(ctx, c.Doc().File(), p.taking(), p.part); out.found != nil || out.works != nil || out.rates != nil {
+		t.Errorf("%+v", out)
 	}
 }

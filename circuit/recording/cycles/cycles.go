@@ -1,6 +1,7 @@
 package cycles
 
 import (
+	"context"
 	"fmt"
 	"math"
 	"slices"
@@ -19,9 +20,10 @@ type Input struct {
 
 // Options changes how cycles are found; the zero value takes the defaults.
 type Options struct {
-	Moving, Held, Off float64 // shares of the top of a channel: above it moves, is held; below it is off
-	Shortest          float64 // s, of a state; a hundredth of the period when not given
-	Period            float64 // s; 0 = to be found
+	Moving, Held, Off float64         // shares of the top of a channel: above it moves, is held; below it is off
+	Shortest          float64         // s, of a state; a hundredth of the period when not given
+	Period            float64         // s; 0 = to be found
+	Context           context.Context // its end is that of the search, as an error; nil = none
 }
 
 // Cycle is one cycle.
@@ -55,6 +57,7 @@ type Result struct {
 
 	in, coarse Input     // as it is, and with fewer rows
 	scanned    []float64 // a cycle as coarse has it, to scan by
+	ctx        context.Context
 }
 
 // points is how many points a cycle is compared by.
@@ -66,11 +69,14 @@ func Find(in Input, o Options) (*Result, error) {
 		return nil, err
 	}
 	o = o.filled()
-	r := &Result{in: in, Typical: -1, Extreme: -1, Odd: -1}
+	r := &Result{in: in, Typical: -1, Extreme: -1, Odd: -1, ctx: o.Context}
 	coarse := states(in, o)
 	runs := runsOf(in, coarse, o)
-	if len(runs) > 0 {
+	if len(runs) > 0 && r.ctx.Err() == nil {
 		r.repeat(runs, o)
+	}
+	if r.ctx.Err() != nil {
+		return nil, r.ctx.Err()
 	}
 	if o.Shortest == 0 && r.Period > 0 {
 		o.Shortest = r.Period / 100
@@ -78,7 +84,7 @@ func Find(in Input, o Options) (*Result, error) {
 	r.States = states(in, o)
 	r.shares()
 	r.judge()
-	return r, nil
+	return r, r.ctx.Err()
 }
 
 func (o Options) filled() Options {
@@ -89,6 +95,9 @@ func (o Options) filled() Options {
 		if !(*x.v > 0) {
 			*x.v = x.d
 		}
+	}
+	if o.Context == nil {
+		o.Context = context.Background()
 	}
 	return o
 }
@@ -241,7 +250,7 @@ const drift = 0.25
 // cut goes from cycle to cycle: the next one starts where what follows is most like the template.
 func (r *Result) cut(from, to, period float64, template []float64) {
 	end := r.in.T[len(r.in.T)-1]
-	for start := from; start+period*(1-drift) <= to && start+period <= end+0.01*period; {
+	for start := from; start+period*(1-drift) <= to && start+period <= end+0.01*period && r.ctx.Err() == nil; {
 		at := start + period // of the last one no next one tells where it ends
 		if start+1.5*period <= to {
 			at = r.next(start, to, period, template)
@@ -317,7 +326,7 @@ func (r *Result) refined(at, period float64, template []float64) float64 {
 
 // judge finds the typical and the extreme cycle and how energies scatter.
 func (r *Result) judge() {
-	if len(r.Cycles) == 0 {
+	if len(r.Cycles) == 0 || r.ctx.Err() != nil {
 		return
 	}
 	r.energies()

@@ -1,6 +1,8 @@
 package cycles
 
 import (
+	"context"
+	"errors"
 	"math"
 	"math/rand"
 	"testing"
@@ -225,4 +227,23 @@ func longPlant(rows int, period float64) Input {
 		in.Power[i] = math.Max(0, v) * pr * 1e3
 	}
 	return in
+}
+
+// A search that is cancelled ends with that error, at once where it is over before it begins.
+func TestSearchIsCancelled(t *testing.T) {
+	var in Input
+	v := []float64{}
+	for i := range 20000 {
+		in.T = append(in.T, 0.01*float64(i))
+		v = append(v, math.Max(0, math.Sin(0.02*math.Pi*float64(i))))
+	}
+	in.Motion = [][]float64{v}
+	ctx, stop := context.WithCancel(context.Background())
+	if r, err := Find(in, Options{Context: ctx}); err != nil || len(r.Cycles) < 150 {
+		t.Fatalf("%v", err)
+	}
+	stop()
+	if _, err := Find(in, Options{Context: ctx}); !errors.Is(err, context.Canceled) {
+		t.Error(err)
+	}
 }
