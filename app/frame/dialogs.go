@@ -236,12 +236,7 @@ func (f *Frame) saveAs(then func()) {
 		if err != nil {
 			f.Fail(err)
 		} else if w != nil {
-			path := w.URI().Path()
-			w.Close() // the document writes beside and renames, so that a crash loses nothing
-			if info, err := os.Stat(path); err == nil && info.Size() == 0 {
-				os.Remove(path)
-			}
-			f.saved(f.doc.SaveAs(path), then)
+			f.saved(f.doc.SaveAs(station.Chosen(w, "")), then)
 		}
 	}, f.win)
 	d.SetFileName(f.suggestedName())
@@ -260,7 +255,7 @@ func (f *Frame) suggestedName() string {
 }
 
 // saveDirVariable names the folder that scripts save into, without a dialog.
-const saveDirVariable = "BARLITRE_SAVE_DIR"
+const saveDirVariable = station.SaveDirVariable
 
 // offerRecovery offers what an earlier run kept before it ended without closing.
 func (f *Frame) offerRecovery() {
