@@ -132,11 +132,11 @@ func (h *HeatStudy) asked(p printer) string {
 	factor, _ := h.reserve()
 	switch {
 	case h.needless():
-		return "none needed"
+		return "none"
 	case design.Fault != "":
 		return "none does"
 	}
-	return p.cooler(design.Asked()) + " clean, " + p.cooler(factor*design.Asked()) + " asked for (" + p.degrees(h.Wanted) + " in the tank)"
+	return p.cooler(factor * design.Asked())
 }
 
 // coolerText says for what the cooler beside two circuits is, and what the request sheet asks for in its place.
@@ -144,8 +144,7 @@ func (s *Solution) coolerText(p printer, c *Comparison) string {
 	if !known(s.Oil) || !known(s.Air) {
 		return ""
 	}
-	text := fmt.Sprintf("The cooler for it takes the whole heat to the oil, oil entering at %s and air entering at %s, the same in both circuits: a measure to compare them by.",
-		p.degrees(s.Oil), p.degrees(s.Air))
+	text := fmt.Sprintf("The cooler for it takes the whole heat, oil entering at %s, air at %s, to compare by.", p.degrees(s.Oil), p.degrees(s.Air))
 	var asked []string
 	for _, run := range []*CircuitRun{c.Base, c.Proposal} {
 		if x := run.Warmth.asked(p); x != "" {
@@ -153,7 +152,7 @@ func (s *Solution) coolerText(p printer, c *Comparison) string {
 		}
 	}
 	if len(asked) > 0 {
-		text += " What to order stands on the cooler request sheet, for the heaviest duty in the hottest hour, less what the walls take: " + strings.Join(asked, "; ") + "."
+		text += " To order: see the cooler request sheet (hottest hour, less what the walls take): " + strings.Join(asked, "; ") + "."
 	}
 	return text
 }

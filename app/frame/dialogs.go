@@ -260,12 +260,7 @@ func (f *Frame) saveAs(then func()) {
 		if err != nil {
 			f.Fail(err)
 		} else if w != nil {
-			path := w.URI().Path()
-			w.Close() // the document writes beside and renames, so that a crash loses nothing
-			if info, err := os.Stat(path); err == nil && info.Size() == 0 {
-				os.Remove(path)
-			}
-			f.saveUnder(path, then)
+			f.saveUnder(station.Chosen(w, ""), then) // the document writes beside and renames, so that a crash loses nothing
 		}
 	}, f.win)
 	d.SetFileName(f.suggestedName())
@@ -284,7 +279,7 @@ func (f *Frame) suggestedName() string {
 }
 
 // saveDirVariable names the folder that scripts save into, without a dialog.
-const saveDirVariable = "BARLITRE_SAVE_DIR"
+const saveDirVariable = station.SaveDirVariable
 
 // offerRecovery offers what an earlier run kept before it ended without closing.
 func (f *Frame) offerRecovery() {

@@ -67,13 +67,7 @@ func (f *Frame) printSheets(on pdf.Paper) {
 		if err != nil {
 			f.Fail(err)
 		} else if w != nil {
-			path := w.URI().Path()
-			w.Close()
-			if filepath.Ext(path) == "" {
-				os.Remove(path)
-				path += ".pdf"
-			}
-			f.writeSheets(path, on)
+			f.writeSheets(station.Chosen(w, ".pdf"), on)
 		}
 	}, f.win)
 	d.SetFileName(name)

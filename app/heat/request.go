@@ -35,13 +35,7 @@ func (h *Heat) saveRequest() {
 		case err != nil:
 			h.ctx.Fail(fmt.Errorf("save the cooler request sheet: %w; nothing was written", err))
 		case w != nil:
-			path := w.URI().Path()
-			w.Close()
-			if filepath.Ext(path) == "" {
-				os.Remove(path) // what the dialog made has another name
-				path += ".pdf"
-			}
-			h.writeRequest(path)
+			h.writeRequest(station.Chosen(w, ".pdf"))
 		}
 	}, h.ctx.Window())
 	d.SetFileName(name + ".pdf")

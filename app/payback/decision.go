@@ -77,19 +77,19 @@ func (d *decision) show(r *audit.Decision, c *audit.Comparison) {
 	d.title.SetText(r.Proposal + " in place of " + r.Base)
 	d.verdict.SetText(d.ctx.Local(r.Verdict))
 	d.credit.SetText(d.ctx.Local(d.creditText(r)))
-	setHidden(d.credit, d.credit.Text == "")
+	widgets.Show(d.credit, d.credit.Text != "")
 	d.oil.SetText(d.ctx.Local(r.Oil))
-	setHidden(d.oil, r.Oil == "")
+	widgets.Show(d.oil, r.Oil != "")
 	d.warnings.SetText("")
 	if len(r.Warnings) > 0 {
 		d.warnings.SetText("▲ " + d.ctx.Local(strings.Join(r.Warnings, "\n▲ ")))
 	}
-	setHidden(d.warnings, len(r.Warnings) == 0)
+	widgets.Show(d.warnings, len(r.Warnings) > 0)
 	d.loadBars(r)
 	d.loadTable(r)
 	d.loadCost(r, c)
 	d.published.SetText(d.ctx.Local(publishedText(r.Published)))
-	setHidden(d.published, d.published.Text == "")
+	widgets.Show(d.published, d.published.Text != "")
 }
 
 // creditText says what of the saving is the repair of faults and habits, "" before that is known.
@@ -114,14 +114,6 @@ func publishedText(p audit.Published) string {
 		return "▲ " + text
 	}
 	return text
-}
-
-func setHidden(o fyne.CanvasObject, hidden bool) {
-	if hidden {
-		o.Hide()
-	} else {
-		o.Show()
-	}
 }
 
 func known(v float64) bool { return !math.IsNaN(v) && !math.IsInf(v, 0) }
@@ -190,7 +182,7 @@ func (d *decision) loadTable(r *audit.Decision) {
 		}
 		rows = append(rows, widgets.FigureRow{Name: f.Name, Cells: []audit.Figure{{}, {}, f}, Sum: f.Name == "simple payback"})
 	}
-	setHidden(d.table.Table, len(rows) == 0)
+	widgets.Show(d.table.Table, len(rows) > 0)
 	d.table.Set([]string{"", r.Base, r.Proposal, "less"}, rows)
 }
 
@@ -205,7 +197,7 @@ func (d *decision) loadCost(r *audit.Decision, c *audit.Comparison) {
 				d.none.SetText(d.none.DumpText() + " Type it at the left, under the cost of " + r.Proposal + ".")
 			}
 		}
-		setHidden(d.none, d.none.Text == "")
+		widgets.Show(d.none, d.none.Text != "")
 		d.cost.Table.Hide()
 		return
 	}

@@ -126,7 +126,7 @@ func (p *Payback) compare(r *audit.Report, s *audit.Solution) {
 	p.empty.SetText("There is nothing to compare yet. A payback needs a circuit as found and a proposal over the same duties: add a proposal under Circuit.")
 	p.empty.Show()
 	head, rows := yearRows(r)
-	setHidden(p.alone.Table, len(rows) == 0)
+	widgets.Show(p.alone.Table, len(rows) > 0)
 	p.alone.Set(head, rows)
 }
 

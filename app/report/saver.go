@@ -128,24 +128,11 @@ func (s *saver) saveFile(what, ext string, write func(context.Context, io.Writer
 		case err != nil:
 			s.ctx.Fail(fmt.Errorf("save %s: %w; nothing was written, and the audit is still open here", what, err))
 		case w != nil:
-			do(chosen(w, ext))
+			do(station.Chosen(w, ext))
 		}
 	}, s.ctx.Window())
 	d.SetFileName(s.base() + ext)
 	s.ask(d)
-}
-
-// chosen returns the path of a file that a dialog made, which is written beside and put in place.
-func chosen(w fyne.URIWriteCloser, ext string) string {
-	path := w.URI().Path()
-	w.Close()
-	if info, err := os.Stat(path); err == nil && info.Size() == 0 {
-		os.Remove(path)
-	}
-	if filepath.Ext(path) == "" {
-		path += ext
-	}
-	return path
 }
 
 func (s *saver) ask(d *dialog.FileDialog) {

@@ -58,7 +58,7 @@ func (p *Page) Changed(w station.What) {
 	running, done, total, err := doc.Advising()
 	p.bar.Max = float64(max(total, 1))
 	p.bar.SetValue(float64(done))
-	hide(p.bar, !running)
+	widgets.Show(p.bar, running)
 	a, _ := doc.Advice()
 	var plan *sitecheck.Plan
 	if a != nil && p.ctx.Solution() != nil {
@@ -74,7 +74,7 @@ func (p *Page) Changed(w station.What) {
 		text = "The test plan stands here as soon as the circuit as found can be solved over a duty that has hours a year."
 	}
 	p.say.SetText(text)
-	hide(p.say, text == "")
+	widgets.Show(p.say, text != "")
 	if comma := p.ctx.Local("0.5"); plan != p.plan || comma != p.comma {
 		p.comma = comma
 		p.show(plan)
@@ -102,16 +102,8 @@ func (p *Page) pick(plans []*sitecheck.Plan) *sitecheck.Plan {
 		p.circuit.Options = names
 		p.circuit.Refresh()
 	}
-	hide(p.circuit, len(names) < 2)
+	widgets.Show(p.circuit, len(names) > 1)
 	return out
-}
-
-func hide(o fyne.CanvasObject, hidden bool) {
-	if hidden {
-		o.Hide()
-	} else {
-		o.Show()
-	}
 }
 
 // show lays the form out for a plan.

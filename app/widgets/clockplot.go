@@ -159,8 +159,8 @@ func (c *ClockPlot) arrange() {
 	a := c.area
 	on := len(a.Lanes) > 0 && c.clock >= a.From && c.clock <= a.To
 	seen := c.line.Visible()
-	show(c.line, on)
-	show(c.mark, on)
+	Show(c.line, on)
+	Show(c.mark, on)
 	if !on {
 		for _, f := range c.flags {
 			f.hide()
@@ -204,19 +204,9 @@ func (c *ClockPlot) arrange() {
 	}
 }
 
-func show(o fyne.CanvasObject, on bool) {
-	if on != o.Visible() {
-		if on {
-			o.Show()
-		} else {
-			o.Hide()
-		}
-	}
-}
-
 func (f *flag) hide() {
-	show(f.text, false)
-	show(f.ground, false)
+	Show(f.text, false)
+	Show(f.ground, false)
 }
 
 // place writes a value right of the line, or left where there is no room.
@@ -237,8 +227,8 @@ func (f *flag) place(text string, p figures.Palette, x, right, y float32) {
 	f.text.Resize(size)
 	f.ground.Move(fyne.NewPos(at-2*k, y))
 	f.ground.Resize(fyne.NewSize(size.Width+4*k, size.Height))
-	show(f.text, true)
-	show(f.ground, true)
+	Show(f.text, true)
+	Show(f.ground, true)
 }
 
 // Parts are the lanes, each with its value at the clock, for scripts.

@@ -85,7 +85,7 @@ func (l *layout) decisions() {
 // is what it takes; what is too much for a page in any case goes on over it.
 func (l *layout) fitted(draw func()) {
 	page := l.sheet
-	for _, try := range []struct{ room, scale float64 }{{1, figureScale}, {0.85, 0.21}, {0.7, 0.195}, {0.5, figureLeast}, {0.4, 0.165}} {
+	for _, try := range []struct{ room, scale float64 }{{1, figureScale}, {0.85, 0.21}, {0.7, 0.195}, {0.5, figureLeast}, {0.4, 0.165}, {0.25, 0.165}} {
 		trial := *page
 		trial.to, trial.p = &recorders{}, pen.NewRecorder()
 		trial.room, trial.scale = try.room*page.room, try.scale

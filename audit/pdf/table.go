@@ -2,6 +2,7 @@ package pdf
 
 import (
 	"math"
+	"slices"
 	"strings"
 	"unicode/utf8"
 
@@ -46,8 +47,11 @@ const (
 // begins with a number is text.
 func numeric(cell string) bool {
 	r, _ := utf8.DecodeRuneInString(cell)
-	return (r >= '0' && r <= '9' || r == '−') && len(strings.Fields(cell)) <= numberWords || cell == "n/a" || cell == "–" || cell == "not given"
+	return (r >= '0' && r <= '9' || strings.ContainsRune("−±≤", r)) && len(strings.Fields(cell)) <= numberWords || slices.Contains(noNumber, cell)
 }
+
+// noNumber are the words that stand where there is no number.
+var noNumber = []string{"n/a", "–", "not given", "none needed", "none does", "no price", "not comparable"}
 
 // numberWords is how many words a number with its unit, or a range of two, has at most; thin spaces part words.
 const numberWords = 8

@@ -49,7 +49,7 @@ const (
 	gasWork    = "A charged vessel. Read at the coupling provided; shut off and discharge before anything is opened."
 	loadWork   = "A load may stand on this line: lower and prop it before the coupling is fitted."
 	filterWork = "Relieve the pressure before the bowl or its couplings are opened."
-	oilWork    = "Oil and metal above some 55 °C burn: do not feel it by hand. Keep hands off fittings under pressure: a fine jet of oil goes through gloves and skin."
+	oilWork    = "Oil and metal above some 55 °C burn: do not touch."
 )
 
 // mostPoints is how many fit a page.
