@@ -59,12 +59,17 @@ func (c copying) do() (made bool, err error) {
 		return false, fmt.Errorf("it cannot be read to be copied along: %w", whole.Plain(err))
 	}
 	defer in.Close()
-	src := &followed{in, c, 0, 0, 0}
+	size := int64(0)
 	if s, ok := in.(interface{ Stat() (fs.FileInfo, error) }); ok {
 		if info, err := s.Stat(); err == nil {
-			src.size = info.Size()
+			size = info.Size()
 		}
 	}
+	src := whole.Watch(c.ctx, in, func(done int64) {
+		if c.progress != nil {
+			c.progress(c.name, done, max(done, size))
+		}
+	})
 	there, err := os.Open(c.target)
 	if err == nil {
 		defer there.Close()
@@ -87,28 +92,6 @@ func copyTo(path string, from io.Reader) error {
 		_, err := io.Copy(w, from)
 		return err
 	})
-}
-
-// followed tells how far it is read, and ends when it is cancelled.
-type followed struct {
-	in               io.Reader
-	c                copying
-	done, told, size int64
-}
-
-// tellBytes is how much is copied between two tellings.
-const tellBytes = 4 << 20
-
-func (f *followed) Read(b []byte) (int, error) {
-	if err := f.c.ctx.Err(); err != nil {
-		return 0, err
-	}
-	n, err := f.in.Read(b)
-	if f.done += int64(n); f.c.progress != nil && f.done-f.told >= tellBytes {
-		f.told = f.done
-		f.c.progress(f.c.name, f.done, max(f.done, f.size))
-	}
-	return n, err
 }
 
 // equal reports whether two readers hold the same.

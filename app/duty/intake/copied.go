@@ -115,7 +115,7 @@ func copied(ctx context.Context, from, dir, sum string, tell func(done int64)) (
 		return "", fmt.Errorf("%s cannot be put beside the audit: %w", name, whole.Plain(err))
 	}
 	hash := sha256.New()
-	_, err = io.Copy(io.MultiWriter(out, hash), &watched{ctx: ctx, in: in, tell: tell})
+	_, err = io.Copy(io.MultiWriter(out, hash), whole.Watch(ctx, in, tell))
 	err = errors.Join(err, out.Close())
 	if err == nil && hex.EncodeToString(hash.Sum(nil)) != sum {
 		err = errors.New("it was changed since it was read; open it again")
@@ -133,29 +133,6 @@ func sumOf(ctx context.Context, path string) (string, error) {
 	}
 	defer f.Close()
 	hash := sha256.New()
-	_, err = io.Copy(hash, &watched{ctx: ctx, in: f})
+	_, err = io.Copy(hash, whole.Watch(ctx, f, nil))
 	return hex.EncodeToString(hash.Sum(nil)), err
-}
-
-// watched ends reading when it is told to, and tells how far it is.
-type watched struct {
-	ctx  context.Context
-	in   io.Reader
-	done int64
-	told int64
-	tell func(done int64)
-}
-
-const tellBytes = 4 << 20
-
-func (w *watched) Read(b []byte) (int, error) {
-	if err := w.ctx.Err(); err != nil {
-		return 0, err
-	}
-	n, err := w.in.Read(b)
-	if w.done += int64(n); w.tell != nil && w.done-w.told > tellBytes {
-		w.told = w.done
-		w.tell(w.done)
-	}
-	return n, err
 }
