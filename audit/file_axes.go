@@ -8,6 +8,7 @@ import (
 
 	"gopkg.in/yaml.v3"
 
+	"barlitre/circuit"
 	"barlitre/circuit/duty"
 )
 
@@ -22,6 +23,32 @@ func (f *File) AddAxis(name string, kind duty.AxisKind) error {
 		return fmt.Errorf("axis %s: %w", name, err)
 	}
 	return f.take("axis "+name, d, func(g *File) bool { return slices.Contains(g.Axes, duty.Axis{Name: name, Kind: kind}) })
+}
+
+// NewAxis names an axis that a block could move and that is not there yet; ok is false for
+// blocks that move none.
+func (f *File) NewAxis(b *circuit.Block) (name string, kind duty.AxisKind, ok bool) {
+	k := circuit.KindNamed(b.Kind)
+	if k == nil || k.Param("axis") == nil {
+		return "", 0, false
+	}
+	name, kind = "ram", duty.Linear
+	if k.Param("displacement") != nil {
+		name, kind = "turn", duty.Rotary
+	}
+	first := name
+	for n := 2; f.mayBeAxis(name) != nil; n++ {
+		name = fmt.Sprint(first, n)
+	}
+	return name, kind, true
+}
+
+// GiveAxis makes a new axis and lets a block move it.
+func (f *File) GiveAxis(target, name string, kind duty.AxisKind) error {
+	if err := f.AddAxis(name, kind); err != nil {
+		return err
+	}
+	return f.Set(target, name)
 }
 
 func (f *File) mayBeAxis(name string) error {

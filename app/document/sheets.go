@@ -84,6 +84,11 @@ func (d *Document) AddAxis(name string, kind duty.AxisKind) error {
 	return d.Edit("Add axis "+name, func(f *audit.File) error { return f.AddAxis(name, kind) })
 }
 
+// GiveAxis makes a new axis and lets a block move it.
+func (d *Document) GiveAxis(target, name string, kind duty.AxisKind) error {
+	return d.Edit("Make axis "+name, func(f *audit.File) error { return f.GiveAxis(target, name, kind) })
+}
+
 // RenameAxis gives an axis another name wherever it is named.
 func (d *Document) RenameAxis(old, name string) error {
 	return d.Edit("Rename axis "+old, func(f *audit.File) error { return f.RenameAxis(old, name) })

@@ -89,15 +89,13 @@ func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
 		return newFileRow(p, circuitName, block, q, target)
 	}
 	options := slices.Clone(q.Choices)
-	if q.Type == circuit.AxisRef {
-		for _, a := range p.s.ctx.Doc().File().Axes {
-			options = append(options, a.Name)
-		}
-	}
 	if q.Default == "" && !q.Need {
 		options = append([]string{none}, options...)
 	}
 	r := &choiceRow{selectRow: newSelectRow(p, q.Title, "field."+q.Key, target, options), param: q}
+	if q.Type == circuit.AxisRef {
+		p.axisChoices(r.selectRow, circuitName, block, q, target, options)
+	}
 	r.beside = newBeside(p, q, func(err error) {
 		r.fill()
 		if err != nil {

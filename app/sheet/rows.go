@@ -234,6 +234,8 @@ type selectRow struct {
 	*base
 	sel     *widgets.Select
 	value   func() (selected, hint string)
+	options func() []string                 // nil where they stay the same
+	pick    func(text string) (bool, error) // of what is no value; nil where there is none
 	filling bool
 }
 
@@ -243,7 +245,14 @@ func newSelectRow(p *panel, title, name, target string, options []string) *selec
 		if r.filling {
 			return
 		}
-		change := func() error { return p.set(target, text) }
+		change := func() error {
+			if r.pick != nil {
+				if done, err := r.pick(text); done {
+					return err
+				}
+			}
+			return p.set(target, text)
+		}
 		if text == none {
 			change = func() error { return p.drop(target) }
 		}
@@ -270,6 +279,9 @@ func (r *selectRow) fill() {
 	r.filling = true
 	defer func() { r.filling = false }()
 	selected, hint := r.value()
+	if r.options != nil {
+		r.sel.Options = r.options()
+	}
 	if r.sel.Selected != selected {
 		r.sel.Selected = selected
 		r.sel.Refresh()

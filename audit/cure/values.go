@@ -26,6 +26,10 @@ func missingValue(p *patient) *Cure {
 	case q.Type == circuit.AxisRef && len(p.file.Axes) == 1:
 		axis := p.file.Axes[0].Name
 		return p.set(fmt.Sprintf("Set %s of %s: %s", lower(q.Title), p.Block, axis), q.Key, axis)
+	case q.Key == "axis" && len(p.file.Axes) == 0:
+		name, kind, _ := p.file.NewAxis(p.b)
+		return &Cure{Name: fmt.Sprintf("Make axis %s for %s", name, p.Block), Told: "Its name can be changed, and its motion said, on the page Duty.",
+			Mend: func(f *audit.File) error { return f.GiveAxis(p.target(q.Key), name, kind) }}
 	case q.Key != "hold" && q.Type != circuit.Number:
 		return &Cure{Name: "Choose " + lower(q.Title), Field: q.Key}
 	case q.Key != "hold":
