@@ -96,7 +96,9 @@ func (b *bench) until(what string, done func() bool) {
 
 func (b *bench) solved() {
 	b.t.Helper()
-	b.until("solved", func() bool { return b.solution != nil && b.Frame.solved == b.doc.Revision() && b.doc.Current() && !b.busy() && !b.solution.Pending })
+	b.until("solved", func() bool {
+		return b.solution != nil && b.Frame.solved == b.doc.Revision() && b.doc.Current() && !b.busy() && !b.solution.Pending
+	})
 }
 
 func (b *bench) busy() bool { running, _, _ := b.doc.Solving(); return running }
