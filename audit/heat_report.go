@@ -39,6 +39,11 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 		return out
 	}
 	p := printer{system: units.Metric}
+	if h.beyondOil() {
+		say(circuit.Warns, "with the cooling described here the oil would get %s in the mean while the machine runs, and no oil stands more than %s: something cools it that is not described, or it needs a cooler. Say so in the section heat; until then its temperatures, and what they do to energy and saving, mean nothing",
+			degreesOrMore(p, h.Week.Ran), p.degrees(mostOil))
+		return out
+	}
 	found, stated := h.AtFound(s.Oil)
 	more := ""
 	if d := found - stated; known(d) && math.Abs(d) > 1e-3*stated {
@@ -83,11 +88,23 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 	return out
 }
 
+// mostOil is a temperature [K] that no hydraulic oil is run at: 120 °C, far above the 80 °C or so
+// that machine builders allow (common practice, no source).
+const mostOil = 273.15 + 120
+
+// farHot is a temperature [K] beyond which a number says nothing any more.
+const farHot = 273.15 + 200
+
+// beyondOil reports whether the cooling described leaves the oil hotter than any oil stands.
+func (h *HeatStudy) beyondOil() bool { return h.Fault == "" && h.Week != nil && h.Week.Ran > mostOil }
+
 // degreesOrMore writes a temperature; "" for none, and without end for one that has none.
 func degreesOrMore(p printer, theta float64) string {
 	switch {
 	case math.IsInf(theta, 1):
 		return "without end"
+	case theta > farHot:
+		return "above " + p.degrees(farHot)
 	case math.IsNaN(theta):
 		return "–"
 	}

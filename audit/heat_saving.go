@@ -42,6 +42,9 @@ func (s *Solution) oilText(p printer, c *Comparison) (text string, stands bool) 
 		return "", false
 	}
 	b, a := c.Base, c.Proposal
+	if b.Warmth.beyondOil() || a.Warmth.beyondOil() {
+		return fmt.Sprintf("Both circuits are compared with oil at %s. What a warmer oil would do to the saving is not worked out: with the cooling described it would get hotter than any oil stands; see the heat study.", p.degrees(s.Oil)), false
+	}
 	text = fmt.Sprintf("Both circuits are compared with oil at %s. As warm as it gets in the mean (%s %s, %s %s)", p.degrees(s.Oil),
 		b.Circuit.Name, p.degrees(b.Warmth.Week.Ran), a.Circuit.Name, p.degrees(a.Warmth.Week.Ran))
 	word := "more"

@@ -269,10 +269,24 @@ func (q *inspector) quantum() float64 {
 	return q.least
 }
 
+// restsLeast is how many stands of much the same length are those of a machine that rests in
+// every cycle, wherever drift or leakage leaves it (our choice).
+const restsLeast = 3
+
+// rests reports whether stands are so many, and none much longer than most.
+func rests(lengths []int) bool {
+	if len(lengths) < restsLeast {
+		return false
+	}
+	sorted := slices.Sorted(slices.Values(lengths))
+	return sorted[len(sorted)-1] <= 2*sorted[len(sorted)/2]
+}
+
 // stuck looks for long stretches of one value, of a channel that is alive elsewhere.
 func (q *inspector) stuck() {
 	least := q.stuckLeast()
 	longest, at, rows, stretches := 0, 0, 0, 0
+	var lengths []int
 	again := q.again()
 	for i := 0; i < len(q.v); {
 		k := i + 1
@@ -280,14 +294,14 @@ func (q *inspector) stuck() {
 			k++
 		}
 		if n := k - i; n >= least && q.v[i] != 0 && !again[q.v[i]] {
-			rows, stretches = rows+n, stretches+1
+			rows, stretches, lengths = rows+n, stretches+1, append(lengths, n)
 			if n > longest {
 				longest, at = n, i
 			}
 		}
 		i = k
 	}
-	if rows == 0 {
+	if rows == 0 || rests(lengths) {
 		return
 	}
 	rest := (q.equal*float64(len(q.v)-1) - float64(rows-stretches)) / math.Max(1, float64(len(q.v)-rows))
