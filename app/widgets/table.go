@@ -73,6 +73,7 @@ type Table struct {
 	editor   *cellEntry
 	editing  bool
 	focused  bool
+	tabbing  bool // Tab goes from cell to cell
 	grabbed  grip
 	pointer  fyne.Position
 	drawn    *pen.Raster

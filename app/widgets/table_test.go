@@ -192,6 +192,34 @@ func TestTypingInCells(t *testing.T) {
 	}
 }
 
+// TestTabGoesFromCellToCell: after a cell was typed into, Tab goes on through the table, by row,
+// and then out of it; before, it is not for the table.
+func TestTabGoesFromCellToCell(t *testing.T) {
+	table, win := tableOf(t, 2, 3, 400, 300)
+	table.Editable = func(_, _ int) bool { return true }
+	table.Commit = func(_, _ int, _ string) error { return nil }
+	tab := &fyne.KeyEvent{Name: fyne.KeyTab}
+	win.Canvas().Focus(table)
+	if table.AcceptsTab() {
+		t.Error("keeps Tab before anything was typed")
+	}
+	table.Select(0, 1)
+	win.Canvas().Focused().TypedRune('5')
+	var went []string
+	for range 4 {
+		win.Canvas().Focused().TypedKey(tab)
+		row, col := table.Selection()
+		went = append(went, fmt.Sprint(row, col, table.AcceptsTab()))
+	}
+	if want := "[0 2 true 1 0 true 1 1 true 1 2 true]"; fmt.Sprint(went) != want {
+		t.Errorf("went %v, want %s", went, want)
+	}
+	win.Canvas().Focused().TypedKey(tab)
+	if table.AcceptsTab() {
+		t.Error("keeps Tab after its last cell")
+	}
+}
+
 // TestColumnsHoldTheirTexts: no number of a table that fits is shortened.
 func TestColumnsHoldTheirTexts(t *testing.T) {
 	table, win := tableOf(t, 3, 4, 600, 200)

@@ -45,11 +45,10 @@ func (e *cellEntry) TypedKey(k *fyne.KeyEvent) {
 	case fyne.KeyUp:
 		e.leave(-1, 0)
 	case fyne.KeyTab:
-		by := 1
-		if d, ok := fyne.CurrentApp().Driver().(desktop.Driver); ok && d.CurrentKeyModifiers()&fyne.KeyModifierShift != 0 {
-			by = -1
+		if e.leave(0, 0) {
+			t.tabbing = true
+			t.tab(tabWay())
 		}
-		e.leave(0, by)
 	case fyne.KeyF1:
 		PassKey(t, k)
 	default:
@@ -57,15 +56,50 @@ func (e *cellEntry) TypedKey(k *fyne.KeyEvent) {
 	}
 }
 
+// tabWay is −1 while Shift is held, else 1.
+func tabWay() int {
+	if d, ok := fyne.CurrentApp().Driver().(desktop.Driver); ok && d.CurrentKeyModifiers()&fyne.KeyModifierShift != 0 {
+		return -1
+	}
+	return 1
+}
+
+// AcceptsTab lets Tab go on from cell to cell once it has left one that was typed into.
+func (t *Table) AcceptsTab() bool { return t.tabbing }
+
+// tab goes to the next cell by row, and beyond the last to what comes after the table.
+func (t *Table) tab(by int) {
+	row, col := t.selRow, t.selCol+by
+	if col < 0 || col >= len(t.columns) {
+		row, col = t.next(row, by), 0
+		if by < 0 {
+			col = len(t.columns) - 1
+		}
+	}
+	if row >= 0 {
+		t.choose(row, col)
+		return
+	}
+	t.tabbing = false
+	if c := fyne.CurrentApp().Driver().CanvasForObject(t); c != nil {
+		if by > 0 {
+			c.FocusNext()
+		} else {
+			c.FocusPrevious()
+		}
+	}
+}
+
 // leave goes to another cell when what was typed is taken; else it stays.
-func (e *cellEntry) leave(rows, cols int) {
+func (e *cellEntry) leave(rows, cols int) bool {
 	t := e.table
 	if !t.take() {
-		return
+		return false
 	}
 	t.stop()
 	t.focus()
 	t.step(rows, cols)
+	return true
 }
 
 func (t *Table) canType(row, col int) bool {

@@ -136,7 +136,7 @@ func (t *Table) FocusGained() {
 
 // FocusLost is the end of it.
 func (t *Table) FocusLost() {
-	t.focused = false
+	t.focused, t.tabbing = false, false
 	t.Refresh()
 }
 
@@ -209,7 +209,12 @@ func (t *Table) TypedKey(k *fyne.KeyEvent) {
 	case fyne.KeyReturn, fyne.KeyEnter, fyne.KeyF2:
 		t.enter()
 	case fyne.KeyEscape:
+		t.tabbing = false
 		t.giveUp()
+	case fyne.KeyTab:
+		if t.tabbing {
+			t.tab(tabWay())
+		}
 	default:
 		if t.Key == nil || !t.Key(k.Name) {
 			PassKey(t, k)
