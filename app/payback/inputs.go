@@ -21,6 +21,7 @@ import (
 type inputs struct {
 	ctx     station.Context
 	content *fyne.Container
+	scroll  *container.Scroll // that the content lies in
 	loading bool // values come from the file: choices are not the user's
 
 	price, low, high, note *widgets.Field
@@ -74,6 +75,7 @@ func newInputs(ctx station.Context) *inputs {
 		widget.NewSeparator(),
 		widgets.Card("Cost of the retrofit", in.costs),
 	)
+	in.scroll = container.NewScroll(widgets.Spaced(in.content))
 	return in
 }
 
@@ -173,6 +175,7 @@ func (in *inputs) show() {
 	in.loading = true
 	defer func() { in.loading = false }()
 	f := in.ctx.Doc().File()
+	height := in.content.MinSize().Height
 	in.showPrice(f)
 	in.credit.SetChecked(f.CreditReturned)
 	if f.HasCO2 {
@@ -191,6 +194,9 @@ func (in *inputs) show() {
 	choose(in.basis, f.CO2Basis)
 	in.showHours(f)
 	in.showCosts(f)
+	if in.content.MinSize().Height != height { // rows came or went: all below moves
+		in.scroll.Refresh()
+	}
 }
 
 // showFuel shows what fuel costs and emits, where an engine burns it.

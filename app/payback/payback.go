@@ -46,7 +46,7 @@ func New(ctx station.Context) station.Station {
 	right := container.NewVBox(p.empty, p.alone.Table, p.results, p.below)
 	p.scroll = container.NewScroll(widgets.Spaced(right))
 	p.alone.In(p.scroll)
-	split := container.NewHSplit(container.NewScroll(widgets.Spaced(p.inputs.content)), p.scroll)
+	split := container.NewHSplit(p.inputs.scroll, p.scroll)
 	split.Offset = 0.36
 	p.pages = newPages(ctx, split, p.saving)
 	p.content = p.pages.content

@@ -8,6 +8,8 @@ import (
 	"strings"
 	"testing"
 
+	"fyne.io/fyne/v2"
+
 	"barlitre/app/station"
 	"barlitre/app/station/stationtest"
 	"barlitre/app/widgets"
@@ -281,5 +283,22 @@ func TestFuelAloneNeedsItsPrice(t *testing.T) {
 	again(c, p)
 	if !p.Mend() {
 		t.Error("fuel without a price is nothing to mend")
+	}
+}
+
+// Rows that come with a value push down what stands below them: no two fields overlap.
+func TestRowsThatComeMoveTheOthers(t *testing.T) {
+	c, _ := shown(t, press)
+	if err := c.Doc().Clear("energy.co2"); err != nil {
+		t.Fatal(err)
+	}
+	c.Wait()
+	p := New(c).(*Payback)
+	c.Show(p, 1190, 590)
+	typeInto(t, c, "payback.co2", "0.38 kg/kWh")
+	basis, hours := widgets.Named("payback.co2.basis").(*widgets.Select), widgets.Named("payback.hours.1").(*widgets.Field)
+	at := func(o fyne.CanvasObject) float32 { return fyne.CurrentApp().Driver().AbsolutePositionForObject(o).Y }
+	if !basis.Visible() || at(hours) < at(basis)+basis.Size().Height {
+		t.Errorf("the basis of the CO2 factor ends at %g, the hours of a duty begin at %g", at(basis)+basis.Size().Height, at(hours))
 	}
 }
