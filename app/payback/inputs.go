@@ -22,7 +22,7 @@ type inputs struct {
 	ctx     station.Context
 	content *fyne.Container
 	scroll  *container.Scroll // that the content lies in
-	loading bool // values come from the file: choices are not the user's
+	loading bool              // values come from the file: choices are not the user's
 
 	price, low, high, note *widgets.Field
 	band                   fyne.CanvasObject

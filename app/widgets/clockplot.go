@@ -158,7 +158,6 @@ func (c *ClockPlot) arrange() {
 	k := Scale()
 	a := c.area
 	on := len(a.Lanes) > 0 && c.clock >= a.From && c.clock <= a.To
-	seen := c.line.Visible()
 	Show(c.line, on)
 	Show(c.mark, on)
 	if !on {
@@ -197,11 +196,7 @@ func (c *ClockPlot) arrange() {
 	}
 	f.place(text, p, x, right, bottom+9*k)
 	f.text.Color = p.Danger
-	if seen {
-		canvas.Refresh(c.line) // all that moved; the plot below would be drawn anew otherwise
-	} else {
-		canvas.Refresh(c)
-	}
+	canvas.Refresh(c)
 }
 
 func (f *flag) hide() {
