@@ -18,11 +18,10 @@ type rail struct {
 	f       *Frame
 	items   []*railItem
 	content *fyne.Container
-	ground  *canvas.Rectangle
 }
 
 func newRail(f *Frame) *rail {
-	r := &rail{f: f, ground: canvas.NewRectangle(color.Transparent)}
+	r := &rail{f: f}
 	box := container.New(column{})
 	for i, s := range f.stations {
 		item := newRailItem(f, i, s.Name())
@@ -30,7 +29,7 @@ func newRail(f *Frame) *rail {
 		r.items = append(r.items, item)
 		box.Add(item)
 	}
-	r.content = container.NewStack(r.ground, container.NewVScroll(box))
+	r.content = container.NewStack(container.NewVScroll(box)) // on the ground of the window
 	return r
 }
 
@@ -38,9 +37,6 @@ func (r *rail) refresh() {
 	if r == nil {
 		return
 	}
-	pal := r.f.Palette()
-	r.ground.FillColor = pal.Ground
-	r.ground.Refresh()
 	for i, item := range r.items {
 		item.set(i == r.f.current, r.f.stations[i].Mend())
 	}
