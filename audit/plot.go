@@ -23,7 +23,7 @@ func (k *Track) At(x float64) float64 {
 	if n == 0 {
 		return 0
 	}
-	i := sort.Search(n, func(i int) bool { return k.T[i] > x })
+	i := k.after(x)
 	switch {
 	case i == 0:
 		return k.V[0]
@@ -32,6 +32,16 @@ func (k *Track) At(x float64) float64 {
 	}
 	t0, t1 := k.T[i-1], k.T[i]
 	return k.V[i-1] + (k.V[i]-k.V[i-1])*(x-t0)/(t1-t0)
+}
+
+// after is the first point behind a time: most tracks are evenly spaced, so where it would then
+// be is looked at first.
+func (k *Track) after(x float64) int {
+	n := len(k.T)
+	if i := 1 + int((x-k.T[0])/(k.T[n-1]-k.T[0])*float64(n-1)); 0 < i && i < n && k.T[i-1] <= x && x < k.T[i] {
+		return i
+	}
+	return sort.Search(n, func(i int) bool { return k.T[i] > x })
 }
 
 // Plot holds the courses of a run: its signals, and the powers of its channels.
