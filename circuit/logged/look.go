@@ -40,8 +40,8 @@ func Rates(d *duty.Duty, means bool) (out []Rated) {
 	return out
 }
 
-// Cycles finds cycles and states: by the speeds of the axes, their loads, and the power that
-// both make. works are the Works of the duty; the end of ctx is that of the search.
+// Cycles finds cycles and states: by the speeds of the axes, their loads, the power that
+// both make, and what tells whether the pump turns. works are the Works of the duty; the end of ctx is that of the search.
 func Cycles(ctx context.Context, d *duty.Duty, works []Moved) (*cycles.Result, error) {
 	in := cycles.Input{T: d.Time}
 	for _, w := range works {
@@ -59,7 +59,31 @@ func Cycles(ctx context.Context, d *duty.Duty, works []Moved) (*cycles.Result, e
 			}
 		}
 	}
-	return cycles.Find(in, cycles.Options{Context: ctx})
+	in.Supply = supplied(d)
+	return cycles.Find(in, cycles.Options{Context: ctx, Turns: in.Supply == nil})
+}
+
+// supplied is what tells whether the pump turns: the power taken from the mains, else the highest of
+// the pressures measured; nil where a duty has neither, for loads alone do not tell.
+func supplied(d *duty.Duty) []float64 {
+	for _, what := range []duty.What{duty.MeasuredPower, duty.MeasuredPressure} {
+		var out []float64
+		for _, t := range d.Tracks {
+			switch {
+			case t.What != what:
+			case out == nil:
+				out = slices.Clone(t.Values)
+			default:
+				for i, v := range t.Values {
+					out[i] = max(out[i], v)
+				}
+			}
+		}
+		if out != nil {
+			return out
+		}
+	}
+	return nil
 }
 
 // Power is what all axes do at each row [W]; of one axis at least.

@@ -21,6 +21,7 @@ type Input struct {
 // Options changes how cycles are found; the zero value takes the defaults.
 type Options struct {
 	Moving, Held, Off float64         // shares of the top of a channel: above it moves, is held; below it is off
+	Turns             bool            // nothing tells when the pump is off: it is taken to turn
 	Shortest          float64         // s, of a state; a hundredth of the period when not given
 	Period            float64         // s; 0 = to be found
 	Context           context.Context // its end is that of the search, as an error; nil = none

@@ -68,7 +68,7 @@ func states(in Input, o Options) []Stretch {
 		if in.Supply != nil {
 			dead = math.Abs(in.Supply[i]) <= o.Off*power
 		}
-		if dead && (in.Supply != nil || len(in.Level) > 0) {
+		if dead && !o.Turns && (in.Supply != nil || len(in.Level) > 0) {
 			return Off
 		}
 		return Idle
