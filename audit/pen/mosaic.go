@@ -16,11 +16,9 @@ const tileSize = 64
 // notes what is to be drawn, and Flush draws only the tiles of the image on which that
 // differs from the last time, several at once. Nothing is on the image before Flush.
 type Mosaic struct {
-	base
+	clipped
 	img    *image.RGBA
 	ground color.NRGBA
-	clip   image.Rectangle // in force; pixels
-	clips  []image.Rectangle
 	ops    []op
 	pts    []Pt // of all ops
 	dashes []float64
@@ -139,23 +137,4 @@ func (m *Mosaic) drawTile(r *Raster, t *tile) {
 // TextWidth returns the width of s in user units.
 func (m *Mosaic) TextWidth(s string, size float64, bold bool) float64 {
 	return TextWidth(s, size, bold)
-}
-
-// ClipRect limits drawing to the pixels the rectangle touches.
-func (m *Mosaic) ClipRect(x, y, w, h float64) {
-	m.clips = append(m.clips, m.clip)
-	a, b := m.at(Pt{x, y}), m.at(Pt{x + w, y + h})
-	if m.okPts(0, a, b) {
-		m.clip = m.clip.Intersect(touched(a, b))
-	}
-}
-
-// Unclip ends the last ClipRect.
-func (m *Mosaic) Unclip() {
-	n := len(m.clips) - 1
-	if n < 0 {
-		m.skipped++
-		return
-	}
-	m.clip, m.clips = m.clips[n], m.clips[:n]
 }

@@ -14,10 +14,8 @@ import (
 // parallel to an axis and rectangles are moved to whole pixels so that they are
 // crisp; everything else is anti-aliased.
 type Raster struct {
-	base
+	clipped
 	img   *image.RGBA
-	clip  image.Rectangle // in force; pixels
-	clips []image.Rectangle
 	z     vector.Rasterizer
 	poly  [2][]Pt // scratch of the polygon clipper
 	work  []Pt    // scratch of the strokes
@@ -49,33 +47,9 @@ func (r *Raster) Clear(c color.NRGBA) {
 	draw.Draw(r.img, r.img.Bounds(), image.NewUniform(c), image.Point{}, draw.Src)
 }
 
-// touched returns the pixels a rectangle touches.
-func touched(a, b Pt) image.Rectangle {
-	return image.Rect(int(math.Floor(a.X+1e-6)), int(math.Floor(a.Y+1e-6)), int(math.Ceil(b.X-1e-6)), int(math.Ceil(b.Y-1e-6)))
-}
-
 // TextWidth returns the width of s in user units.
 func (r *Raster) TextWidth(s string, size float64, bold bool) float64 {
 	return TextWidth(s, size, bold)
-}
-
-// ClipRect limits drawing to the pixels the rectangle touches.
-func (r *Raster) ClipRect(x, y, w, h float64) {
-	r.clips = append(r.clips, r.clip)
-	a, b := r.at(Pt{x, y}), r.at(Pt{x + w, y + h})
-	if r.okPts(0, a, b) {
-		r.clip = r.clip.Intersect(touched(a, b))
-	}
-}
-
-// Unclip ends the last ClipRect.
-func (r *Raster) Unclip() {
-	n := len(r.clips) - 1
-	if n < 0 {
-		r.skipped++
-		return
-	}
-	r.clip, r.clips = r.clips[n], r.clips[:n]
 }
 
 // Polyline implements Pen.

@@ -6,7 +6,6 @@ import (
 	"slices"
 	"strings"
 
-	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
@@ -39,12 +38,10 @@ func (t *tracks) addAxis(text string) error {
 func (t *tracks) fillAxes() {
 	p := t.p
 	shows := fmt.Sprint(p.axes)
-	if len(t.axes.Objects) > 0 && t.axes.Objects[0].(*widget.Label).Text == shows {
+	if t.shown == shows {
 		return
 	}
-	mark := widget.NewLabel(shows)
-	mark.Hide()
-	t.axes.Objects = []fyne.CanvasObject{mark}
+	t.shown, t.axes.Objects = shows, nil
 	if len(p.axes) > 0 {
 		t.axes.Add(say("Axes that are made with the duty", widget.MediumImportance, true))
 	}

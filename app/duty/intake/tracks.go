@@ -20,6 +20,7 @@ type tracks struct {
 	made    []*trackRows
 	shows   string
 	axes    *fyne.Container
+	shown   string // what axes lists
 	add     *choice
 	axis    *widgets.Field
 	turns   *widgets.Check
