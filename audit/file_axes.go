@@ -53,7 +53,7 @@ func (f *File) GiveAxis(target, name string, kind duty.AxisKind) error {
 
 func (f *File) mayBeAxis(name string) error {
 	switch {
-	case !idText.MatchString(name):
+	case !IsName(name):
 		return fmt.Errorf("axis %q: use letters, digits and _ only", name)
 	case f.isAxis(name):
 		return fmt.Errorf("there is an axis %s already; choose another name", name)

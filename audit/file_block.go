@@ -119,7 +119,7 @@ func (f *File) hasTrackOf(id string) bool {
 // mayBeCalled says why a block cannot have an id.
 func (f *File) mayBeCalled(e *CircuitEntry, id string) error {
 	switch {
-	case !idText.MatchString(id):
+	case !IsName(id):
 		return fmt.Errorf("block %q: use letters, digits and _ only", id)
 	case e.Block(id) != nil:
 		return fmt.Errorf("circuit %q has a block %s already; choose another id", e.Name, id)

@@ -167,6 +167,9 @@ func (r *reader) axisNames(n *yaml.Node) {
 
 var idText = regexp.MustCompile(`^[\pL\pN_]+$`)
 
+// IsName reports whether a text may be the name of a block or an axis.
+func IsName(text string) bool { return idText.MatchString(text) }
+
 // id reports whether a name can stand in lines and tracks.
 func (r *reader) id(s scope, n *yaml.Node, what string) bool {
 	if !idText.MatchString(n.Value) {

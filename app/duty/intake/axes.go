@@ -2,7 +2,6 @@ package intake
 
 import (
 	"fmt"
-	"regexp"
 	"slices"
 	"strings"
 
@@ -10,10 +9,9 @@ import (
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
+	"barlitre/audit"
 	"barlitre/circuit/duty"
 )
-
-var axisName = regexp.MustCompile(`^[\pL\pN_]+$`)
 
 // addAxis keeps an axis to be made with the duty.
 func (t *tracks) addAxis(text string) error {
@@ -21,7 +19,7 @@ func (t *tracks) addAxis(text string) error {
 	if text == "" {
 		return nil
 	}
-	if _, taken := p.kind(text); taken || !axisName.MatchString(text) {
+	if _, taken := p.kind(text); taken || !audit.IsName(text) {
 		return fmt.Errorf("use letters, digits and _ only, and a name that no axis has")
 	}
 	kind := duty.Linear
@@ -62,7 +60,7 @@ func (t *tracks) renameAxis(i int, text string) error {
 	if text == old {
 		return nil
 	}
-	if _, taken := p.kind(text); !axisName.MatchString(text) || taken && !p.isAxisOfFile(text, p.axes[i].Kind) {
+	if _, taken := p.kind(text); !audit.IsName(text) || taken && !p.isAxisOfFile(text, p.axes[i].Kind) {
 		return fmt.Errorf("use letters, digits and _ only, and a name that no axis has")
 	}
 	p.tracks = slices.Clone(p.tracks)
