@@ -1,7 +1,7 @@
 package audit
 
 import (
-	"sort"
+	"slices"
 
 	"barlitre/circuit"
 	"barlitre/circuit/duty"
@@ -23,25 +23,83 @@ func (k *Track) At(x float64) float64 {
 	if n == 0 {
 		return 0
 	}
-	i := k.after(x)
+	return k.between(k.after(x), x)
+}
+
+// between is the value at time x, which lies behind i points.
+func (k *Track) between(i int, x float64) float64 {
 	switch {
 	case i == 0:
 		return k.V[0]
-	case i == n:
-		return k.V[n-1]
+	case i == len(k.V):
+		return k.V[i-1]
 	}
 	t0, t1 := k.T[i-1], k.T[i]
 	return k.V[i-1] + (k.V[i]-k.V[i-1])*(x-t0)/(t1-t0)
 }
 
-// after is the first point behind a time: most tracks are evenly spaced, so where it would then
-// be is looked at first.
+// after is the first point behind a time: most tracks are about evenly spaced, so it is looked
+// for from where it would then be, in steps that grow.
 func (k *Track) after(x float64) int {
 	n := len(k.T)
-	if i := 1 + int((x-k.T[0])/(k.T[n-1]-k.T[0])*float64(n-1)); 0 < i && i < n && k.T[i-1] <= x && x < k.T[i] {
-		return i
+	lo, hi := 0, n // it lies between: all before lo are not behind x, and hi is, or the end
+	if share := (x - k.T[0]) / (k.T[n-1] - k.T[0]) * float64(n-1); share >= 0 && share < float64(n-1) {
+		i := 1 + int(share)
+		if k.T[i] > x {
+			for hi, lo = i, i-1; lo > 0 && k.T[lo-1] > x; lo = max(0, lo-2*(i-lo)) {
+				hi = lo
+			}
+		} else {
+			for lo, hi = i+1, i+1; hi < n && k.T[hi] <= x; hi = min(n, hi+2*(hi-i)) {
+				lo = hi + 1
+			}
+		}
 	}
-	return sort.Search(n, func(i int) bool { return k.T[i] > x })
+	for lo < hi {
+		if m := (lo + hi) / 2; k.T[m] > x {
+			hi = m
+		} else {
+			lo = m + 1
+		}
+	}
+	return lo
+}
+
+// Instant reads tracks at one time [SI]. Those that share their times are searched once.
+type Instant struct {
+	x    float64
+	last *float64 // the first of the times that were searched last, and what was found there
+	n, i int
+}
+
+// NewInstant is the instant x.
+func NewInstant(x float64) *Instant { return &Instant{x: x} }
+
+// Of is what At says of a track.
+func (in *Instant) Of(k *Track) float64 {
+	n := len(k.T)
+	if n == 0 {
+		return 0
+	}
+	if in.last != &k.T[0] || in.n != n {
+		in.last, in.n, in.i = &k.T[0], n, k.after(in.x)
+	}
+	return k.between(in.i, in.x)
+}
+
+// shareTimes lets tracks with the same times as the first one have them in common.
+func (p *Plot) shareTimes() {
+	var first []float64
+	for _, list := range [][]Track{p.Signals, p.Powers} {
+		for i := range list {
+			if k := &list[i]; first == nil {
+				first = slices.Clip(k.T)
+				k.T = first
+			} else if slices.Equal(k.T, first) {
+				k.T = first
+			}
+		}
+	}
 }
 
 // Plot holds the courses of a run: its signals, and the powers of its channels.
@@ -53,6 +111,7 @@ type Plot struct {
 	Measured []Track // what the duty says was measured; Name is that of the signal it belongs to
 	Channels []circuit.Channel
 	Thinned  bool
+	ways     *ways // of these signals
 }
 
 // PlotPoints is the largest number of points a track keeps: more than a wide

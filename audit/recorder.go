@@ -31,7 +31,7 @@ func newStretch(tracks int) stretch {
 
 // newRecorder makes a recorder for about so many time steps.
 func newRecorder(signals []circuit.Signal, channels []circuit.Channel, steps int) *recorder {
-	p := &Plot{Channels: channels, Thinned: steps > PlotPoints}
+	p := &Plot{Channels: channels, Thinned: steps > PlotPoints, ways: &ways{}}
 	r := &recorder{plot: p, stride: 1}
 	size := steps
 	if p.Thinned {
@@ -149,6 +149,7 @@ func (r *recorder) done() *Plot {
 			k.put(r.t, v)
 		}
 	}
+	r.plot.shareTimes()
 	return r.plot
 }
 

@@ -2,7 +2,6 @@ package sheet
 
 import (
 	"fmt"
-	"image"
 	"image/color"
 	"time"
 
@@ -163,11 +162,11 @@ func (e *editor) label(run *audit.CircuitRun) {
 	}
 }
 
-// boxesOf asks a sheet where its blocks lie, by drawing it without ink.
+// boxesOf asks a sheet where its blocks lie.
 func boxesOf(sh *figures.Sheet) []blockBox {
 	ox, oy := sh.Origin()
 	var out []blockBox
-	for _, r := range sh.Draw(pen.NewRaster(image.NewRGBA(image.Rect(0, 0, 1, 1))), 0, 0, 1, nil, figures.SheetOptions{HideLabels: true}) {
+	for _, r := range sh.Regions(0, 0, 1, true) {
 		if r.Kind == figures.SheetBlock {
 			out = append(out, blockBox{r.Block, r.X + ox, r.Y + oy, r.W, r.H})
 		}

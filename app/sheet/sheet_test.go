@@ -197,7 +197,7 @@ func TestHoverReads(t *testing.T) {
 	}
 	e.redraw()
 	b.picture("hover")
-	for _, r := range e.sheet.Draw(nowhere(), 0, 0, 1, e.state, e.opt) {
+	for _, r := range e.sheet.Regions(0, 0, 1, e.opt.HideLabels) {
 		if r.Kind != figures.SheetLine || r.W*r.H == 0 {
 			continue
 		}

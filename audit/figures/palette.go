@@ -95,13 +95,18 @@ func faded(c color.NRGBA, alpha uint8) color.NRGBA {
 }
 
 // linear undoes the transfer curve of sRGB (IEC 61966-2-1).
-func linear(v uint8) float64 {
-	c := float64(v) / 255
-	if c <= 0.04045 {
-		return c / 12.92
+func linear(v uint8) float64 { return linears[v] }
+
+var linears = func() (list [256]float64) {
+	for v := range list {
+		if c := float64(v) / 255; c <= 0.04045 {
+			list[v] = c / 12.92
+		} else {
+			list[v] = math.Pow((c+0.055)/1.055, 2.4)
+		}
 	}
-	return math.Pow((c+0.055)/1.055, 2.4)
-}
+	return list
+}()
 
 func encoded(c float64) uint8 {
 	c = max(0, min(1, c))

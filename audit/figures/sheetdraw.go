@@ -78,18 +78,19 @@ type sheetDrawing struct {
 	pal    Palette
 	scales SheetScales
 	most   float64 // heat of the largest disc
+	fixed  *still
 	now    []netNow
-	tints  []color.NRGBA  // of the lines
-	warm   color.NRGBA    // of numbers that belong to a disc
-	stubOf []map[int]bool // by part: pieces drawn as lines
-	bold   float64        // how much wider than usual symbols are drawn; 0 = as usual
+	tints  []color.NRGBA // of the lines
+	warm   color.NRGBA   // of numbers that belong to a disc
+	bold   float64       // how much wider than usual symbols are drawn; 0 = as usual
+	room   []pen.Pt      // for points on their way to the pen, which keeps none
 }
 
-// Draw draws the sheet with its upper left corner at (x, y), scale units of p a module,
-// and returns what can be pointed at, in the units of p. A nil state draws the circuit
-// alone. Nothing is drawn outside Size (and LegendHeight below it).
-func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOptions) []SheetRegion {
-	d := &sheetDrawing{Sheet: s, p: p, st: st, opt: opt, pal: opt.Palette}
+// Draw draws the sheet with its upper left corner at (x, y), scale units of p a module.
+// A nil state draws the circuit alone. Nothing is drawn outside Size (and LegendHeight
+// below it).
+func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOptions) {
+	d := &sheetDrawing{Sheet: s, p: p, st: st, opt: opt, pal: opt.Palette, fixed: s.fixed()}
 	d.now = s.flows(st)
 	d.scales = d.fill(opt.Scales)
 	d.most = d.scales.Heat
@@ -123,7 +124,6 @@ func (s *Sheet) Draw(p pen.Pen, x, y, scale float64, st *SheetState, opt SheetOp
 		p.Pop()
 	}
 	p.Pop()
-	return s.regions(x, y, scale, opt.HideLabels)
 }
 
 // fill replaces scales that are not given by the largest value at hand.
@@ -206,6 +206,15 @@ func (pal Palette) heatText() color.NRGBA {
 
 func penPt(p drawing.Pt) pen.Pt { return pen.Pt{X: p.X, Y: p.Y} }
 
+// points are points on their way to the pen, until the next.
+func (d *sheetDrawing) points(p []drawing.Pt) []pen.Pt {
+	d.room = d.room[:0]
+	for _, q := range p {
+		d.room = append(d.room, penPt(q))
+	}
+	return d.room
+}
+
 func penPts(p []drawing.Pt) []pen.Pt {
 	out := make([]pen.Pt, len(p))
 	for i, q := range p {
@@ -214,8 +223,9 @@ func penPts(p []drawing.Pt) []pen.Pt {
 	return out
 }
 
-// regions lists what can be pointed at: labels and blocks before lines.
-func (s *Sheet) regions(x, y, scale float64, hideLabels bool) []SheetRegion {
+// Regions lists what can be pointed at on the sheet as Draw draws it there: blocks and
+// labels before lines.
+func (s *Sheet) Regions(x, y, scale float64, hideLabels bool) []SheetRegion {
 	var out []SheetRegion
 	add := func(k SheetKind, block string, net int, b drawing.Box) {
 		out = append(out, SheetRegion{k, block, net, x + (b.Min.X-s.box.Min.X)*scale, y + (b.Min.Y-s.box.Min.Y)*scale,

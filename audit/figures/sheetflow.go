@@ -17,16 +17,21 @@ type netNow struct {
 // over.
 func (s *Sheet) flows(st *SheetState) []netNow {
 	out := make([]netNow, len(s.nets))
+	ends := 0
+	for i := range s.nets {
+		ends += len(s.nets[i].ends)
+	}
+	room, at := make([]float64, ends), s.fixed().ends
 	for i := range s.nets {
 		n := &s.nets[i]
-		now := netNow{pressure: math.NaN(), into: make([]float64, len(n.ends)), known: st != nil}
+		now := netNow{pressure: math.NaN(), known: st != nil}
+		now.into, room = room[:len(n.ends):len(n.ends)], room[len(n.ends):]
 		sum := 0.0
-		for k, e := range n.ends {
-			name := s.parts[e.part].id + "." + e.port
-			if v, ok := st.Signal(name + ".p"); ok && finite(v) && math.IsNaN(now.pressure) {
+		for k := range n.ends {
+			if v, ok := st.Signal(at[i][k].p); ok && finite(v) && math.IsNaN(now.pressure) {
 				now.pressure = v
 			}
-			if v, ok := st.Signal(name + ".q"); ok && finite(v) {
+			if v, ok := st.Signal(at[i][k].q); ok && finite(v) {
 				now.into[k] = v
 				sum += v
 			}
@@ -56,7 +61,6 @@ func (st *stretch) along(n netNow) float64 {
 // chevron is a mark of direction: its tip and the direction it points in.
 type chevron struct {
 	tip, dir drawing.Pt
-	width    float64 // of the line
 }
 
 // Spacing of chevrons along a straight piece [M].
@@ -66,9 +70,10 @@ const (
 	chevronClear = 1.6 // from crossings
 )
 
-// chevrons returns the marks along a stretch with flow q along its points. The longest
-// piece has one if there is room, other pieces if they are long enough.
-func (s *Sheet) chevrons(st *stretch, q, width float64) []chevron {
+// chevrons returns the marks along a stretch with flow along its points, or against them
+// if q is below 0. The longest piece has one if there is room, other pieces if they are
+// long enough.
+func (s *Sheet) chevrons(st *stretch, q float64) []chevron {
 	var out []chevron
 	longest := 0.0
 	for i := 1; i < len(st.pts); i++ {
@@ -91,7 +96,7 @@ func (s *Sheet) chevrons(st *stretch, q, width float64) []chevron {
 			if s.nearCrossing(tip) {
 				continue
 			}
-			out = append(out, chevron{tip, dir, width})
+			out = append(out, chevron{tip, dir})
 		}
 	}
 	return out

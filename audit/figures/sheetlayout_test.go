@@ -118,7 +118,7 @@ func TestSheetHitAndMove(t *testing.T) {
 		t.Errorf("RV1 dragged from %v, %v to %v, %v", x, y, x2, y2)
 	}
 	checkJoined(t, d)
-	for _, r := range s.Draw(pen.NewRecorder(), 0, 0, 4, nil, SheetOptions{Palette: Light}) {
+	for _, r := range s.Regions(0, 0, 4, false) {
 		if r.Kind == SheetBlock && r.Block == "RV1" && !r.Contains((x-ox)*4, (y-oy)*4) {
 			t.Errorf("the region of RV1 is %v", r)
 		}

@@ -13,6 +13,13 @@ type Lifted struct {
 // veil says what of a sheet is not drawn.
 type veil struct{ parts, nets, notes, groups map[int]bool }
 
+// veiled is the sheet without what a veil hides.
+func (s *Sheet) veiled(v *veil) *Sheet {
+	out := *s
+	out.veil, out.still = v, &still{}
+	return &out
+}
+
 func newVeil() *veil {
 	return &veil{map[int]bool{}, map[int]bool{}, map[int]bool{}, map[int]bool{}}
 }
@@ -68,14 +75,10 @@ func (s *Sheet) Lift(blocks []string, notes ...int) *Lifted {
 		}
 		list.groups[i] = true
 	}
-	still := *s
-	still.veil = up
-	return &Lifted{Still: &still, s: s, blocks: blocks, notes: notes, rest: rest}
+	return &Lifted{Still: s.veiled(up), s: s, blocks: blocks, notes: notes, rest: rest}
 }
 
 // At is what was taken up, moved [M], with plain elbows for its lines.
 func (l *Lifted) At(dx, dy float64) *Sheet {
-	out := l.s.Drag(l.blocks, dx, dy, l.notes...)
-	out.veil = l.rest
-	return out
+	return l.s.Drag(l.blocks, dx, dy, l.notes...).veiled(l.rest)
 }

@@ -32,22 +32,20 @@ func (d *sheetDrawing) tint(n netNow) color.NRGBA {
 func (d *sheetDrawing) lines() {
 	for i := range d.stretches {
 		if st := &d.stretches[i]; d.opt.Lines[st.net] && !d.veil.net(st.net) {
-			d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1, C: faded(d.pal.Gain, 90)})
+			d.p.Polyline(d.points(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1, C: faded(d.pal.Gain, 90)})
 		}
 	}
 	if st := d.piece(d.opt.Piece); st != nil && !d.veil.net(st.net) {
-		d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1.2, C: faded(d.pal.Gain, 170)})
+		d.p.Polyline(d.points(st.pts), false, color.NRGBA{}, pen.Stroke{W: lineWidest + 1.2, C: faded(d.pal.Gain, 170)})
 	}
 	for i := range d.stretches {
 		if !d.veil.net(d.stretches[i].net) {
-			d.line(&d.stretches[i])
+			d.line(i)
 		}
 	}
 	d.drawStubs()
-	for _, c := range d.crossings {
-		if !d.veil.net(c.Over) && !d.veil.net(c.Under) {
-			d.crossing(c)
-		}
+	for i := range d.crossings {
+		d.crossing(i)
 	}
 	for i := range d.nets {
 		d.dots(i)
@@ -58,8 +56,8 @@ func (d *sheetDrawing) lines() {
 			continue
 		}
 		if q := st.along(d.now[st.net]); d.flowing(q) {
-			for _, c := range d.chevrons(st, q, d.widthOf(q)) {
-				d.chevron(c, d.tints[st.net])
+			for _, c := range d.fixed.tipsFor(i, q) {
+				d.chevron(c, d.widthOf(q), d.tints[st.net])
 			}
 		}
 	}
@@ -71,23 +69,27 @@ func (d *sheetDrawing) flowing(q float64) bool {
 }
 
 // line draws a stretch.
-func (d *sheetDrawing) line(st *stretch) {
+func (d *sheetDrawing) line(i int) {
+	st := &d.stretches[i]
 	switch d.nets[st.net].kind {
 	case drawing.Shaft, drawing.Rod:
 		d.shaft(st.pts)
 	case drawing.Electric:
 		d.electric(st)
 	default:
-		d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, d.stroke(st))
+		d.p.Polyline(d.fixed.stretchs[i].pts, false, color.NRGBA{}, d.stroke(st))
 	}
 }
 
 func (d *sheetDrawing) stroke(st *stretch) pen.Stroke {
-	w := d.widthOf(st.along(d.now[st.net]))
+	return dashed(d.strokeWidth(st), d.tints[st.net], st.style)
+}
+
+func (d *sheetDrawing) strokeWidth(st *stretch) float64 {
 	if st.pilot {
-		w = lineThin
+		return lineThin
 	}
-	return dashed(w, d.tints[st.net], st.style)
+	return d.widthOf(st.along(d.now[st.net]))
 }
 
 // dashed is a stroke of a style; the dashes of a wide line are longer.
@@ -103,8 +105,8 @@ func dashed(w float64, c color.NRGBA, style drawing.Style) pen.Stroke {
 func (d *sheetDrawing) shaft(pts []drawing.Pt) {
 	ink := pen.Stroke{W: symbolLine, C: d.pal.Ink}
 	if len(pts) > 2 { // round corners: a wide line with a narrower one on it
-		d.p.Polyline(penPts(pts), false, color.NRGBA{}, pen.Stroke{W: 1 + symbolLine, C: d.pal.Ink})
-		d.p.Polyline(penPts(pts), false, color.NRGBA{}, pen.Stroke{W: 1 - symbolLine, C: d.pal.Card})
+		d.p.Polyline(d.points(pts), false, color.NRGBA{}, pen.Stroke{W: 1 + symbolLine, C: d.pal.Ink})
+		d.p.Polyline(d.points(pts), false, color.NRGBA{}, pen.Stroke{W: 1 - symbolLine, C: d.pal.Card})
 		return
 	}
 	a, b := pts[0], pts[1]
@@ -119,7 +121,7 @@ func (d *sheetDrawing) shaft(pts []drawing.Pt) {
 // electric draws a thin line with three strokes across it, for three phases.
 func (d *sheetDrawing) electric(st *stretch) {
 	thin := pen.Stroke{W: 0.16, C: d.pal.Ink}
-	d.p.Polyline(penPts(st.pts), false, color.NRGBA{}, thin)
+	d.p.Polyline(d.points(st.pts), false, color.NRGBA{}, thin)
 	best := 1
 	for i := 1; i < len(st.pts); i++ {
 		if distance(st.pts[i-1], st.pts[i]) > distance(st.pts[best-1], st.pts[best]) {
@@ -140,12 +142,8 @@ func (d *sheetDrawing) electric(st *stretch) {
 
 // drawStubs carries the lines on to the bodies of the symbols.
 func (d *sheetDrawing) drawStubs() {
-	d.stubOf = make([]map[int]bool, len(d.parts))
-	for _, sb := range d.stubs() {
-		if d.stubOf[sb.part] == nil {
-			d.stubOf[sb.part] = map[int]bool{}
-		}
-		d.stubOf[sb.part][sb.prim] = true
+	for i := range d.fixed.stubs {
+		sb := &d.fixed.stubs[i]
 		if d.veil.net(sb.net) {
 			continue
 		}
@@ -154,7 +152,7 @@ func (d *sheetDrawing) drawStubs() {
 		if sb.pilot {
 			w = lineThin
 		}
-		pts := penPts(sb.pts)
+		pts := d.points(sb.pts)
 		if out := distance(sb.pts[0], sb.pts[1]); sb.style == drawing.Solid && out > 0 { // lap over the line, or a seam shows
 			pts[0].X -= 0.2 / out * (pts[1].X - pts[0].X)
 			pts[0].Y -= 0.2 / out * (pts[1].Y - pts[0].Y)
@@ -164,8 +162,8 @@ func (d *sheetDrawing) drawStubs() {
 }
 
 // crossing leaves a gap in the line that passes below.
-func (d *sheetDrawing) crossing(c drawing.Crossing) {
-	over, under := d.stretchAt(c.Over, c.At, true), d.stretchAt(c.Under, c.At, false)
+func (d *sheetDrawing) crossing(i int) {
+	c, over, under := d.crossings[i], d.fixed.over[i][0], d.fixed.over[i][1]
 	if over == nil || under == nil {
 		return
 	}
@@ -178,7 +176,7 @@ func (d *sheetDrawing) crossing(c drawing.Crossing) {
 	}
 	top := d.stroke(over)
 	top.Dash = nil
-	half := d.stroke(under).W/2 + 0.5
+	half := d.strokeWidth(under)/2 + 0.5
 	piece := func(half float64) []pen.Pt {
 		return []pen.Pt{{X: c.At.X - along.X*half, Y: c.At.Y - along.Y*half}, {X: c.At.X + along.X*half, Y: c.At.Y + along.Y*half}}
 	}
@@ -192,52 +190,25 @@ func (d *sheetDrawing) rank(st *stretch) float64 {
 	if !d.nets[st.net].kind.Fluid() {
 		return -1
 	}
-	r := d.stroke(st).W
+	r := d.strokeWidth(st)
 	if st.style == drawing.Solid {
 		r += lineThin
 	}
 	return r
 }
 
-// stretchAt finds the stretch of a net that passes a point upright or level.
-func (s *Sheet) stretchAt(net int, at drawing.Pt, upright bool) *stretch {
-	for i := range s.stretches {
-		st := &s.stretches[i]
-		if st.net != net {
-			continue
-		}
-		for k := 1; k < len(st.pts); k++ {
-			a, b := st.pts[k-1], st.pts[k]
-			if (a.X == b.X) == upright && contains(grown(union(drawing.Box{Min: a, Max: a}, drawing.Box{Min: b, Max: b}), 1e-6), at) {
-				return st
-			}
-		}
-	}
-	return nil
-}
-
 // dots marks where lines of a net meet, no narrower than the lines.
 func (d *sheetDrawing) dots(i int) {
-	if !d.nets[i].kind.Fluid() || d.veil.net(i) {
-		return
-	}
-	for _, at := range d.nets[i].route.Dots {
-		w := 0.0
-		for k := range d.stretches {
-			st := &d.stretches[k]
-			if st.net == i && (st.pts[0] == at || st.pts[len(st.pts)-1] == at) {
-				w = math.Max(w, d.stroke(st).W)
-			}
-		}
-		d.p.Circle(penPt(at), math.Max(0.42, w/2+0.12), d.tints[i], pen.Stroke{})
+	for _, dot := range d.fixed.dots[i] {
+		d.p.Circle(dot.at, math.Max(0.42, d.widest(dot)/2+0.12), d.tints[i], pen.Stroke{})
 	}
 }
 
 // chevron draws a mark of direction: cut out of a wide line, on a thin one laid over it.
-func (d *sheetDrawing) chevron(c chevron, tint color.NRGBA) {
+func (d *sheetDrawing) chevron(c chevron, width float64, tint color.NRGBA) {
 	half, stroke := 0.62, pen.Stroke{W: 0.26, C: tint}
-	if c.width >= 0.55 {
-		half, stroke = c.width/2+0.08, pen.Stroke{W: 0.26, C: d.pal.Card}
+	if width >= 0.55 {
+		half, stroke = width/2+0.08, pen.Stroke{W: 0.26, C: d.pal.Card}
 	}
 	back := math.Min(0.62, half)
 	foot := drawing.Pt{X: c.tip.X - c.dir.X*back, Y: c.tip.Y - c.dir.Y*back}

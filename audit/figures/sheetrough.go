@@ -37,7 +37,7 @@ func (before *Sheet) Rough(c *circuit.Circuit) *Sheet {
 		s.nets[i].route = r.routes[i]
 	}
 	maps.DeleteFunc(s.stale, func(_ int, stale bool) bool { return !stale })
-	s.laid = r
+	s.laid, s.still = r, &still{}
 	for i := range s.nets {
 		s.stretches = append(s.stretches, s.cut(i, nets[i])...)
 	}
@@ -87,12 +87,11 @@ func (r *routing) covered(route drawing.Route, boxes []drawing.Box) bool {
 
 // Bare is the sheet without its lines and their labels.
 func (s *Sheet) Bare() *Sheet {
-	out := *s
-	out.veil = newVeil()
+	lines := newVeil()
 	for i := range s.nets {
-		out.veil.nets[i] = true
+		lines.nets[i] = true
 	}
-	return &out
+	return s.veiled(lines)
 }
 
 // find returns the number of a net with the same ports in the same places, −1 for none.

@@ -28,16 +28,18 @@ func StateAt(run *audit.DutyRun, t float64) *SheetState {
 		return nil
 	}
 	st := &SheetState{T: t, signals: make(map[string]float64, len(run.Plot.Signals)), heat: map[string]float64{}, travel: map[string]travel{}}
+	now := audit.NewInstant(t)
 	for i := range run.Plot.Signals {
 		k := &run.Plot.Signals[i]
-		st.signals[k.Name] = k.At(t)
+		st.signals[k.Name] = now.Of(k)
 		if block, isSpeed := speedOf(k.Name); isSpeed {
-			st.travel[block] = travelOf(k, t)
+			w := run.Plot.Way(i)
+			st.travel[block] = travel{w.At(t), w.Span()}
 		}
 	}
 	for i, c := range run.Plot.Channels {
 		if c.Role == circuit.Loss {
-			st.heat[c.Block] += math.Max(0, run.Plot.Powers[i].At(t))
+			st.heat[c.Block] += math.Max(0, now.Of(&run.Plot.Powers[i]))
 		}
 	}
 	return st
@@ -67,25 +69,6 @@ func speedOf(signal string) (block string, ok bool) {
 		return signal[:n], true
 	}
 	return "", false
-}
-
-// travelOf integrates a speed up to t by trapezoids over the points kept, and takes the
-// lowest place of the cycle as zero.
-func travelOf(k *audit.Track, t float64) travel {
-	s, low, high, at := 0.0, 0.0, 0.0, 0.0
-	for i := 1; i < len(k.T); i++ {
-		dt, dv := k.T[i]-k.T[i-1], k.V[i]-k.V[i-1]
-		if t >= k.T[i-1] && t < k.T[i] {
-			part := t - k.T[i-1]
-			at = s + part*(k.V[i-1]+0.5*dv*part/dt)
-		}
-		s += dt * (k.V[i-1] + 0.5*dv)
-		low, high = math.Min(low, s), math.Max(high, s)
-		if t >= k.T[i] {
-			at = s
-		}
-	}
-	return travel{at - low, high - low}
 }
 
 // Heat returns what a block turns to heat: W, or J if Energy is set; 0 for a nil state

@@ -21,9 +21,9 @@ func (d *sheetDrawing) symbols() {
 		square, tint := d.square(p)
 		for k, q := range p.symbol.Prims {
 			if q.Part == square && q.Kind == drawing.Poly && !q.Filled {
-				d.p.Polyline(penPts(q.Pts), true, tint, pen.Stroke{})
+				d.p.Polyline(d.points(q.Pts), true, tint, pen.Stroke{})
 			}
-			if d.stubOf[i][k] {
+			if d.fixed.drawnAsLine(i, k) {
 				continue
 			}
 			if q.Part == "piston" || q.Part == "rod" {
@@ -53,12 +53,12 @@ func (d *sheetDrawing) prim(q drawing.Prim) {
 	}
 	switch q.Kind {
 	case drawing.Line:
-		d.p.Polyline(penPts(q.Pts), false, color.NRGBA{}, line)
+		d.p.Polyline(d.points(q.Pts), false, color.NRGBA{}, line)
 	case drawing.Poly:
 		if q.Part == "piston" {
 			fill = d.pal.Ink
 		}
-		d.p.Polyline(penPts(q.Pts), true, fill, line)
+		d.p.Polyline(d.points(q.Pts), true, fill, line)
 	case drawing.Circle:
 		d.p.Circle(penPt(q.C), q.R, fill, line)
 	case drawing.Arc:
@@ -87,7 +87,7 @@ func (s *Sheet) markPlace(p *part) drawing.Pt {
 // inForce draws a way through a valve in its present position: bold, in the colour of
 // its square.
 func (d *sheetDrawing) inForce(q drawing.Prim) {
-	bold := sheetDrawing{p: d.p, pal: d.pal, bold: 1.7}
+	bold := sheetDrawing{p: d.p, pal: d.pal, bold: 1.7, room: d.room}
 	bold.pal.Ink = d.pal.Gain
 	bold.prim(q)
 }

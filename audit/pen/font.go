@@ -31,7 +31,12 @@ type face struct {
 	advance map[rune]float64
 	index   map[rune]sfnt.GlyphIndex
 	masks   map[maskKey]mask
+	widths  map[string]float64 // of cleaned texts
+	cleaned map[string]string  // of texts that are more than plain ones
 }
+
+// mostTexts is how many texts a face remembers; then it forgets all.
+const mostTexts = 4000
 
 // faces holds the regular and the bold face, parsed on first use. The embedded
 // fonts are checked by the tests of assets, so a parse error is a broken build.
@@ -53,7 +58,7 @@ func parse(data []byte) *face {
 		panic("pen: embedded font: " + err.Error())
 	}
 	return &face{font: f, units: float64(f.UnitsPerEm()), advance: map[rune]float64{},
-		index: map[rune]sfnt.GlyphIndex{}, masks: map[maskKey]mask{}}
+		index: map[rune]sfnt.GlyphIndex{}, masks: map[maskKey]mask{}, widths: map[string]float64{}, cleaned: map[string]string{}}
 }
 
 // glyph returns the index of a rune, 0 if the font lacks it. The caller holds mu.
@@ -89,11 +94,33 @@ func (f *face) width(r rune) float64 {
 func (f *face) textWidth(s string) float64 {
 	f.mu.Lock()
 	defer f.mu.Unlock()
-	w := 0.0
+	w, ok := f.widths[s]
+	if ok {
+		return w
+	}
 	for _, r := range s {
 		w += f.width(r)
 	}
+	remember(f.widths, s, w)
 	return w
+}
+
+// remember keeps what was found of a text.
+func remember[V any](of map[string]V, s string, v V) {
+	if len(of) >= mostTexts {
+		clear(of)
+	}
+	of[strings.Clone(s)] = v
+}
+
+// plain reports whether a text has printable ASCII alone, which the font has.
+func plain(s string) bool {
+	for i := 0; i < len(s); i++ {
+		if s[i] < ' ' || s[i] > '~' {
+			return false
+		}
+	}
+	return true
 }
 
 // Clean returns s as every pen writes it, and as any text that goes straight
@@ -102,9 +129,22 @@ func (f *face) textWidth(s string) float64 {
 // above U+FFFF; the PDF library panics on those. Invisible joiners and direction
 // marks are dropped. Never fails.
 func Clean(s string) string {
+	if plain(s) {
+		return s
+	}
 	f := faceOf(false)
 	f.mu.Lock()
 	defer f.mu.Unlock()
+	out, ok := f.cleaned[s]
+	if !ok {
+		out = f.clean(s)
+		remember(f.cleaned, s, out)
+	}
+	return out
+}
+
+// clean does the work of Clean. The caller holds mu.
+func (f *face) clean(s string) string {
 	return strings.Map(func(r rune) rune {
 		switch {
 		case r < ' ' || r >= 0x7f && r < 0xa0 || r == 0x2028 || r == 0x2029:

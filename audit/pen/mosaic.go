@@ -22,6 +22,7 @@ type Mosaic struct {
 	ops    []op
 	pts    []Pt // of all ops
 	dashes []float64
+	room   []Pt // for points on their way into an op
 	across int
 	tiles  []tile
 	pens   []*Raster

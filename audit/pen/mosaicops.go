@@ -114,17 +114,24 @@ func cubics(pts []Pt) []Cubic {
 	return out
 }
 
+// fine is a size in sixteenths of a pixel, which nobody sees change.
+func fine(v float64) float64 { return math.Round(v*16) / 16 }
+
 // around is what a shape about points, wide by a stroke, may touch.
 func around(pts []Pt, w float64) image.Rectangle { return bounds(pts).Inset(-int(w/2) - 2) }
 
 // Polyline implements Pen.
 func (m *Mosaic) Polyline(p []Pt, closed bool, fill color.NRGBA, s Stroke) {
-	pts, st := m.all(p), m.stroke(s)
+	m.room = m.room[:0]
+	for _, q := range p {
+		m.room = append(m.room, m.at(q))
+	}
+	pts, st := m.room, m.stroke(s)
 	if !m.okPts(st.W, pts...) || len(pts) == 0 {
 		return
 	}
 	if fill.A == 0 && st.W > 0 && axisParallel(pts) && (!closed || axisParallel([]Pt{pts[len(pts)-1], pts[0]})) {
-		pts, st.W = snap(pts, st.W) // as it will be drawn: a change of less than that is none
+		pts, st.W = snap(pts, fine(st.W)) // as it will be drawn: a change of less than that is none
 	}
 	m.add(op{kind: opLine, closed: closed, fill: fill, ink: st.C, w: st.W}, pts, st.Dash, around(pts, st.W))
 }
@@ -149,7 +156,7 @@ func disc(c Pt, radius, w float64) image.Rectangle {
 
 // Circle implements Pen.
 func (m *Mosaic) Circle(c Pt, radius float64, fill color.NRGBA, s Stroke) {
-	a, rad, st := m.at(c), radius*m.cur.s, m.stroke(s)
+	a, rad, st := m.at(c), fine(radius*m.cur.s), m.stroke(s)
 	if m.okPts(st.W, a) && m.ok(rad) && rad >= 0 {
 		m.add(op{kind: opCircle, fill: fill, ink: st.C, w: st.W, n: [3]float64{rad}}, []Pt{a}, st.Dash, disc(a, rad, st.W))
 	}

@@ -5,6 +5,7 @@ import (
 	"image/color"
 	"image/draw"
 	"math"
+	"slices"
 	"sync"
 
 	"golang.org/x/image/vector"
@@ -15,11 +16,14 @@ import (
 // crisp; everything else is anti-aliased.
 type Raster struct {
 	clipped
-	img   *image.RGBA
-	z     vector.Rasterizer
-	poly  [2][]Pt // scratch of the polygon clipper
-	work  []Pt    // scratch of the strokes
-	polys [][]Pt
+	img    *image.RGBA
+	z      vector.Rasterizer
+	poly   [2][]Pt // scratch of the polygon clipper
+	work   []Pt    // scratch of the strokes
+	polys  [][]Pt
+	round  []Pt // scratch of circles
+	dashed []Pt // scratch of dashes, and where each ends
+	ends   []int
 
 	colour image.Uniform
 }
@@ -79,20 +83,19 @@ func (r *Raster) Circle(c Pt, radius float64, fill color.NRGBA, s Stroke) {
 	if !r.okPts(st.W, m) || !r.ok(rad) || rad < 0 {
 		return
 	}
+	r.round = r.round[:0]
 	if fill.A > 0 {
-		r.fill(fill, circle(m, rad))
+		r.fill(fill, r.circle(m, rad))
 	}
 	switch {
 	case st.W <= 0 || st.C.A == 0:
 	case len(st.Dash) > 0:
-		pts := circle(m, rad)
+		pts := r.circle(m, rad)
 		r.line(append(pts, pts[0]), false, st)
 	default: // a ring: the outer circle less the inner one run backwards
-		in := circle(m, max(0, rad-st.W/2))
-		for i, j := 0, len(in)-1; i < j; i, j = i+1, j-1 {
-			in[i], in[j] = in[j], in[i]
-		}
-		r.fill(st.C, circle(m, rad+st.W/2), in)
+		in := r.circle(m, max(0, rad-st.W/2))
+		slices.Reverse(in)
+		r.fill(st.C, r.circle(m, rad+st.W/2), in)
 	}
 }
 
@@ -148,14 +151,15 @@ func wholePixels(a, b float64) (int, int) {
 	return i, j
 }
 
-// circle returns the points of a circle in the turning sense strokes use.
-func circle(c Pt, rad float64) []Pt {
+// circle returns the points of a circle in the turning sense strokes use, which stay until
+// r.round is emptied.
+func (r *Raster) circle(c Pt, rad float64) []Pt {
 	n := int(max(8, min(mostChords, 10*math.Sqrt(rad)))) // chords leave it by 0.05 px
-	out := make([]Pt, n)
-	for i, q := range unitCircles[n]() {
-		out[i] = Pt{c.X + rad*q.X, c.Y + rad*q.Y}
+	from := len(r.round)
+	for _, q := range unitCircles[n]() {
+		r.round = append(r.round, Pt{c.X + rad*q.X, c.Y + rad*q.Y})
 	}
-	return out
+	return r.round[from:len(r.round):len(r.round)]
 }
 
 const mostChords = 400

@@ -24,8 +24,11 @@ func (r *Raster) line(pts []Pt, closed bool, st Stroke) {
 		pts, st.W = snap(pts, st.W)
 	}
 	if len(st.Dash) > 0 {
-		for _, d := range dashes(pts, st.Dash) {
-			r.solid(d, false, square, st)
+		r.dashed, r.ends = dashes(r.dashed[:0], r.ends[:0], pts, st.Dash)
+		from := 0
+		for _, to := range r.ends {
+			r.solid(r.dashed[from:to], false, square, st)
+			from = to
 		}
 		return
 	}
@@ -47,7 +50,7 @@ func (r *Raster) solid(pts []Pt, closed, square bool, st Stroke) {
 		if box.Intersect(r.clip).Empty() {
 			continue
 		}
-		r.work, r.polys = r.work[:0], r.polys[:0]
+		r.work, r.polys, r.round = r.work[:0], r.polys[:0], r.round[:0]
 		for j := i; j < m; j++ {
 			first, last := j == 0 && !closed, j == n-1 && !closed
 			if bars {
@@ -56,7 +59,7 @@ func (r *Raster) solid(pts []Pt, closed, square bool, st Stroke) {
 			}
 			r.piece(pts[j], pts[j+1], h, square && !first, square && !last)
 			if !square && !last {
-				r.polys = append(r.polys, circle(pts[j+1], h))
+				r.polys = append(r.polys, r.circle(pts[j+1], h))
 			}
 		}
 		if !bars {
@@ -162,8 +165,8 @@ func snap(p []Pt, w float64) ([]Pt, float64) {
 // line is drawn solid, as it would look anyway.
 const maxDashes = 20000
 
-// dashes cuts a line into the strokes of the pattern.
-func dashes(pts []Pt, pattern []float64) [][]Pt {
+// dashes adds the strokes of the pattern on a line to out, and where each ends there.
+func dashes(out []Pt, ends []int, pts []Pt, pattern []float64) ([]Pt, []int) {
 	total, sum := 0.0, 0.0
 	for i := 1; i < len(pts); i++ {
 		total += math.Hypot(pts[i].X-pts[i-1].X, pts[i].Y-pts[i-1].Y)
@@ -172,11 +175,11 @@ func dashes(pts []Pt, pattern []float64) [][]Pt {
 		sum += d
 	}
 	if total/sum*float64(len(pattern)) > maxDashes {
-		return [][]Pt{pts}
+		return append(out, pts...), append(ends, len(out)+len(pts))
 	}
-	var out [][]Pt
 	k, left := 0, pattern[0]
-	cur := []Pt{pts[0]}
+	from := len(out) // of the stroke at hand
+	out = append(out, pts[0])
 	for i := 1; i < len(pts); i++ {
 		a, b := pts[i-1], pts[i]
 		l := math.Hypot(b.X-a.X, b.Y-a.Y)
@@ -185,22 +188,25 @@ func dashes(pts []Pt, pattern []float64) [][]Pt {
 			at, left = at+step, left-step
 			q := Pt{a.X + (b.X-a.X)*at/l, a.Y + (b.Y-a.Y)*at/l}
 			if k%2 == 0 {
-				cur = append(cur, q)
+				out = append(out, q)
 			}
 			if left <= 0 { // the stroke or gap is used up: change over
-				if k%2 == 0 && len(cur) > 1 {
-					out = append(out, cur)
+				if k%2 == 0 && len(out)-from > 1 {
+					ends = append(ends, len(out))
+				} else {
+					out = out[:from]
 				}
 				k++
-				left, cur = pattern[k%len(pattern)], []Pt{q}
+				left, from = pattern[k%len(pattern)], len(out)
+				out = append(out, q)
 			}
 			if at >= l {
 				break
 			}
 		}
 	}
-	if k%2 == 0 && len(cur) > 1 {
-		out = append(out, cur)
+	if k%2 == 0 && len(out)-from > 1 {
+		return out, append(ends, len(out))
 	}
-	return out
+	return out[:from], ends
 }

@@ -1,5 +1,7 @@
 package units
 
+import "sync"
+
 // Unit is one unit of one quantity: SI value = x·Factor + Offset.
 type Unit struct {
 	Symbol         string // as written in files, ASCII: "cm3/rev"
@@ -180,9 +182,19 @@ func Preferred(d Dim, s System) Unit {
 	if d < 0 || d >= dimCount || s < Metric || s > SI {
 		return Unit{Dim: d, Factor: 1, System: SI}
 	}
-	u, err := ParseUnit(quantities[d].preferred[s], d)
-	if err != nil { // excluded by a test over all quantities and systems
-		return Unit{Dim: d, Factor: 1, System: SI}
-	}
-	return u
+	return preferred()[d][s]
 }
+
+// preferred is worked out once: pictures that move ask for it for every number in them.
+var preferred = sync.OnceValue(func() (list [dimCount][SI + 1]Unit) {
+	for d := range list {
+		for s := range list[d] {
+			u, err := ParseUnit(quantities[d].preferred[s], Dim(d))
+			if err != nil { // excluded by a test over all quantities and systems
+				u = Unit{Dim: Dim(d), Factor: 1, System: SI}
+			}
+			list[d][s] = u
+		}
+	}
+	return list
+})
