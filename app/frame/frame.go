@@ -314,6 +314,14 @@ func (f *Frame) Local(text string) string {
 	return units.DecimalComma(text)
 }
 
+// Words is Local as it is now.
+func (f *Frame) Words() func(string) string {
+	if !f.settings.comma {
+		return nil
+	}
+	return units.DecimalComma
+}
+
 // Palette returns the colours of the theme.
 func (f *Frame) Palette() figures.Palette { return f.theme().Palette() }
 

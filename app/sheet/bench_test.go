@@ -170,10 +170,16 @@ func (b *bench) Text(si float64, d units.Dim, digits int) string {
 	return b.Local(units.Format(si, units.Preferred(d, b.system), digits))
 }
 func (b *bench) Local(text string) string {
-	if b.comma {
-		return strings.ReplaceAll(text, ".", ",")
+	if w := b.Words(); w != nil {
+		return w(text)
 	}
 	return text
+}
+func (b *bench) Words() func(string) string {
+	if !b.comma {
+		return nil
+	}
+	return func(text string) string { return strings.ReplaceAll(text, ".", ",") }
 }
 func (b *bench) Palette() figures.Palette { return widgets.Theme{Dark: b.dark}.Palette() }
 func (b *bench) Go(string)                {}

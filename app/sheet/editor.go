@@ -65,6 +65,7 @@ type editor struct {
 	}
 	raster *canvas.Raster
 	pen    *pen.Mosaic
+	film   film
 	over   *fyne.Container
 	band   *canvas.Rectangle
 	ring   *widgets.Rim
@@ -175,10 +176,20 @@ func boxesOf(sh *figures.Sheet) []blockBox {
 }
 
 func (e *editor) redraw() {
+	e.film.stop()
 	if e.s.panel != nil {
 		e.s.panel.follow()
 	}
 	e.raster.Refresh()
+	e.hover.place()
+}
+
+// redrawClock is redraw where only the clock has moved.
+func (e *editor) redrawClock() {
+	if !e.roll() {
+		e.redraw()
+		return
+	}
 	e.hover.place()
 }
 

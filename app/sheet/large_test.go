@@ -160,6 +160,7 @@ func BenchmarkLargePlay(b *testing.B) {
 	defer frames(b)()
 	for i := 0; b.Loop(); i++ {
 		bench.SetClock(float64(i%400) / 10)
+		bench.pump()
 		e.paint(w, h)
 	}
 }

@@ -95,7 +95,7 @@ func TestLargeOpensWithoutLines(t *testing.T) {
 	e := b.s.editors[0]
 	shapes := func() (lines int, says bool) {
 		r := pen.NewRecorder()
-		e.draw(r, e.sheet, false)
+		e.picture(e.sheet, false).inUnits(r)
 		for _, t := range r.Boxes() {
 			says = says || strings.HasPrefix(t.Text, "Laying the lines")
 		}

@@ -37,8 +37,12 @@ func (r *editorRenderer) Layout(size fyne.Size) {
 	r.e.ring.Resize(size.SubtractWidthHeight(2, 2))
 }
 func (r *editorRenderer) MinSize() fyne.Size { return r.e.MinSize() }
-func (r *editorRenderer) Refresh()           { r.e.raster.Refresh(); canvas.Refresh(r.e.over) }
-func (r *editorRenderer) Destroy()           {}
+func (r *editorRenderer) Refresh() {
+	r.e.film.stop()
+	r.e.raster.Refresh()
+	canvas.Refresh(r.e.over)
+}
+func (r *editorRenderer) Destroy() {}
 func (r *editorRenderer) Objects() []fyne.CanvasObject {
 	return []fyne.CanvasObject{r.e.raster, r.e.clip, r.e.copied}
 }

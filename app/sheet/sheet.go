@@ -95,8 +95,11 @@ func (s *Station) Changed(w station.What) {
 		s.content.Refresh()
 	}
 	for _, e := range s.editors {
-		if w&^(station.Clock|station.Reading) != 0 || w.Has(station.Clock) && e.state != nil {
+		switch {
+		case w&^(station.Clock|station.Reading) != 0:
 			e.redraw()
+		case w.Has(station.Clock) && e.state != nil:
+			e.redrawClock()
 		}
 	}
 	if w&station.Everything == station.Everything {

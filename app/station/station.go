@@ -105,6 +105,8 @@ type Context interface {
 	Text(si float64, d units.Dim, digits int) string
 	// Local puts the user's decimal sign into a printed text or number.
 	Local(text string) string
+	// Words is what Local does now, also for use behind the window; nil if it does nothing.
+	Words() func(text string) string
 	Palette() figures.Palette
 
 	// PickFile asks for a file to read; endings are like ".csv".

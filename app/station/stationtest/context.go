@@ -188,8 +188,16 @@ func (c *Context) Text(si float64, d units.Dim, digits int) string {
 
 // Local puts the decimal sign in.
 func (c *Context) Local(text string) string {
-	if c.Comma {
-		return strings.ReplaceAll(text, ".", ",")
+	if w := c.Words(); w != nil {
+		return w(text)
 	}
 	return text
+}
+
+// Words is Local as it is now.
+func (c *Context) Words() func(string) string {
+	if !c.Comma {
+		return nil
+	}
+	return func(text string) string { return strings.ReplaceAll(text, ".", ",") }
 }

@@ -1,0 +1,98 @@
+package sheet
+
+import (
+	"image"
+
+	"barlitre/audit/pen"
+)
+
+// film draws a large sheet behind the window while the clock runs, so that the window can
+// paint the drawing before meanwhile. What is shown is behind the clock by a frame.
+type film struct {
+	pen    *pen.Mosaic
+	frames [2]*image.RGBA // by turns: one may be shown while the other is made
+	shown  *image.RGBA    // nil = the sheet is drawn as it is painted
+	made   chan finished   // not nil while one is being made, which comes out of it
+	again  bool           // the clock has moved on meanwhile
+	cut    int            // counts what makes a drawing under way useless
+}
+
+// finished is a drawing that was made.
+type finished struct {
+	img *image.RGBA
+	cut int // count when it was begun
+}
+
+// shows is the drawing for a size in pixels, nil if there is none.
+func (f *film) shows(w, h int) image.Image {
+	switch {
+	case f.shown == nil:
+		return nil
+	case f.shown.Rect.Dx() != w || f.shown.Rect.Dy() != h:
+		f.stop()
+		return nil
+	}
+	return f.shown
+}
+
+// stop has the sheet drawn as it is painted: something else than the clock has changed.
+func (f *film) stop() {
+	f.shown, f.again = nil, false
+	f.cut++
+}
+
+// roll shows the drawing that is ready and begins that of the instant of the clock. It reports
+// false for a sheet that is drawn quickly, is not painted yet or is being changed.
+func (e *editor) roll() bool {
+	f := &e.film
+	if !large(e.drawn) || e.pen == nil || e.moved != nil || e.laying.bare != nil || e.sheet == nil || e.Size().Width <= 0 {
+		return false
+	}
+	e.takeFrame()
+	if f.again = f.made != nil; f.again {
+		return true
+	}
+	size := e.pen.Image().Rect
+	if f.pen == nil || f.pen.Image().Rect != size {
+		f.pen = pen.NewMosaic(size.Dx(), size.Dy())
+		f.frames = [2]*image.RGBA{image.NewRGBA(size), image.NewRGBA(size)}
+	}
+	to := f.frames[0]
+	if to == f.shown {
+		to = f.frames[1]
+	}
+	made := make(chan finished, 1)
+	f.made = made
+	p, cut, m := e.picture(e.sheet, true).kept(), f.cut, f.pen
+	pixels := float64(size.Dx()) / float64(e.Size().Width)
+	go func() {
+		m.Begin(p.ground)
+		p.draw(m, pixels)
+		m.Flush()
+		copy(to.Pix, m.Image().Pix)
+		made <- finished{to, cut}
+		post(e.lastFrame) // the clock may be at rest by then; while it runs, the next step takes it sooner
+	}()
+	return true
+}
+
+// takeFrame shows the drawing that was being made, if it is ready and of use.
+func (e *editor) takeFrame() {
+	f := &e.film
+	select {
+	case d := <-f.made:
+		f.made = nil
+		if d.cut == f.cut {
+			f.shown = d.img
+			e.raster.Refresh()
+		}
+	default:
+	}
+}
+
+// lastFrame shows the drawing that is ready, and makes another if the clock has moved on.
+func (e *editor) lastFrame() {
+	if e.takeFrame(); e.film.again && e.film.made == nil {
+		e.redrawClock()
+	}
+}
