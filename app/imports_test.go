@@ -41,7 +41,7 @@ var arrows = map[string]arrow{
 	"audit/pdf":                  {ours: []string{"audit", "circuit", "audit/pen", "audit/figures", "machines/units", "circuit/...", "audit/calendar", "audit/thermal", "audit/fixfirst", "audit/sitecheck"}, outside: []string{"github.com/jung-kurt/gofpdf"}},
 	"audit":                      {ours: []string{"circuit", "circuit/...", "machines", "machines/units", "audit/thermal", "audit/calendar", "audit/whole"}, outside: []string{"gonum.org/v1/gonum", "gopkg.in/yaml.v3"}},
 	"app/document":               {ours: []string{"audit", "audit/...", "circuit", "circuit/...", "machines", "machines/units", "samples"}},
-	"app":                        {ours: []string{"..."}, outside: []string{"fyne.io/fyne/v2"}},
+	"app":                        {ours: []string{"..."}, outside: []string{"fyne.io/fyne/v2", "github.com/go-gl/glfw"}},
 	"audit/calendar":             {},
 	"audit/whole":                {},
 	"audit/thermal":              {outside: []string{"gonum.org/v1/gonum"}},

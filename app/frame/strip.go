@@ -161,6 +161,7 @@ type clockFigure struct {
 	flag    *canvas.Raster
 	pen     *pen.Raster // of the flag
 	text    string      // in it
+	wide    float64     // the room it takes at scale 1
 	pointer fyne.Position
 }
 

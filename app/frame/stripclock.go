@@ -75,6 +75,7 @@ func (c *clockFigure) follow(read bool) {
 	}
 	// The values stand over the numbers of the axis: there they hide no phase and no track.
 	wide := pen.TextWidth(c.text, flagText, true) + 2*flagSide
+	c.wide = wide
 	c.flag.Move(at(max(stripPad+s.area.X, min(w-4-wide, x-wide/2)), foot))
 	c.flag.Resize(size(wide, flagHigh))
 	if read {
@@ -99,9 +100,9 @@ func (c *clockFigure) paintFlag(w, h int) image.Image {
 	p, pal := c.pen, c.s.f.Palette()
 	p.Reset(p.Image())
 	p.Clear(pal.Card)
-	p.Push(0, 0, float64(h)/flagHigh)
-	wide := float64(w) * flagHigh / float64(max(h, 1))
-	pen.RoundRect(p, 0.5, 0.5, wide-1, flagHigh-1, 3, pal.Ground, pen.Stroke{W: 1, C: pal.Danger})
+	k := min(float64(h)/flagHigh, float64(w)/max(c.wide, 1)) // both sides come in whole pixels
+	p.Push(0, 0, k)
+	pen.RoundRect(p, 0.5, 0.5, float64(w)/k-1, float64(h)/k-1, 3, pal.Ground, pen.Stroke{W: 1, C: pal.Danger})
 	p.Text(pen.Pt{X: flagSide, Y: 12.5}, c.text, flagText, pal.Ink, pen.Left, true)
 	p.Pop()
 	return p.Image()

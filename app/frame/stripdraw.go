@@ -143,9 +143,18 @@ func (playRow) Layout(o []fyne.CanvasObject, size fyne.Size) {
 	o[1].Resize(fyne.NewSize(size.Width-first-gap, size.Height))
 }
 
-// atClock writes the time and the values of the tracks at it.
+// flagValues is how many values stand beside the clock; of more nobody could tell whose they are.
+const flagValues = 6
+
+// atClock writes the time, and the values of the tracks at it if these are few.
 func (s *strip) atClock() string {
-	text := units.Number(s.f.clock, 4) + " s"
+	text, n := units.Number(s.f.clock, 4)+" s", 0
+	for _, l := range s.asked {
+		n += len(l)
+	}
+	if n > flagValues {
+		return text
+	}
 	for i, l := range s.plot.Lanes {
 		for _, x := range s.asked[i] {
 			text += " · " + units.Number(x.unit.FromSI(at(x.t, x.v, s.f.clock)), 3) + " " + l.Unit

@@ -12,7 +12,7 @@ type film struct {
 	pen    *pen.Mosaic
 	frames [2]*image.RGBA // by turns: one may be shown while the other is made
 	shown  *image.RGBA    // nil = the sheet is drawn as it is painted
-	made   chan finished   // not nil while one is being made, which comes out of it
+	made   chan finished  // not nil while one is being made, which comes out of it
 	again  bool           // the clock has moved on meanwhile
 	cut    int            // counts what makes a drawing under way useless
 }

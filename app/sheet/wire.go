@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"math"
+	"slices"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
@@ -81,7 +82,7 @@ func (w *wire) mark(block string) {
 		if n == len(w.dots) {
 			d := canvas.NewCircle(w.e.s.ctx.Palette().Gain)
 			w.dots = append(w.dots, d)
-			w.e.over.Add(d)
+			w.e.over.Objects = slices.Insert(w.e.over.Objects, 0, fyne.CanvasObject(d)) // under what is read of a block
 		}
 		w.round(w.dots[n], p, portDot)
 		n++

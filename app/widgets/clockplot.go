@@ -170,9 +170,9 @@ func (c *ClockPlot) arrange() {
 	top, last := float32(a.Lanes[0].Y)*k, a.Lanes[len(a.Lanes)-1]
 	bottom := float32(last.Y+last.H) * k
 	c.line.FillColor = p.Danger
-	c.line.Move(fyne.NewPos(x-0.75, top-4*k))
-	c.line.Resize(fyne.NewSize(1.5, bottom-top+8*k))
-	c.mark.Move(fyne.NewPos(x-4*k, top-9*k))
+	c.line.Move(fyne.NewPos(x-0.75, top-2*k))
+	c.line.Resize(fyne.NewSize(1.5, bottom-top+6*k))
+	c.mark.Move(fyne.NewPos(x-4*k, top-3*k)) // in the lane: above it stand the names of its lines
 	c.mark.Resize(fyne.NewSize(8*k, 6*k))
 	right := float32(a.X+a.W) * k
 	for i := range a.Lanes {
@@ -184,7 +184,7 @@ func (c *ClockPlot) arrange() {
 				text = c.Value(i, c.clock)
 			}
 		}
-		f.place(text, p, x, right, float32(a.Lanes[i].Y+2)*k)
+		f.place(text, p, p.Ink, x, right, float32(a.Lanes[i].Y+2)*k)
 	}
 	f := c.flags[len(c.flags)-1]
 	text := f.text.Text
@@ -194,9 +194,7 @@ func (c *ClockPlot) arrange() {
 			text = c.Format(c.clock)
 		}
 	}
-	f.place(text, p, x, right, bottom+9*k)
-	f.text.Color = p.Danger
-	canvas.Refresh(c)
+	f.place(text, p, p.Danger, x, right, bottom+9*k)
 }
 
 func (f *flag) hide() {
@@ -205,14 +203,20 @@ func (f *flag) hide() {
 }
 
 // place writes a value right of the line, or left where there is no room.
-func (f *flag) place(text string, p figures.Palette, x, right, y float32) {
+func (f *flag) place(text string, p figures.Palette, ink color.Color, x, right, y float32) {
 	if text == "" {
 		f.hide()
 		return
 	}
 	k := Scale()
-	f.text.Text, f.text.Color, f.text.TextSize, f.text.TextStyle = text, p.Ink, tableSmall*k, fyne.TextStyle{Bold: true}
-	f.ground.FillColor = faint(p.Card, 225)
+	if size := tableSmall * k; f.text.Text != text || f.text.TextSize != size || f.text.Color != ink {
+		f.text.Text, f.text.TextSize, f.text.Color, f.text.TextStyle = text, size, ink, fyne.TextStyle{Bold: true}
+		canvas.Refresh(f.text)
+	}
+	if ground := faint(p.Card, 225); f.ground.FillColor != ground {
+		f.ground.FillColor = ground
+		canvas.Refresh(f.ground)
+	}
 	size := f.text.MinSize()
 	at := x + 5*k
 	if at+size.Width > right {

@@ -123,7 +123,7 @@ func (c *ClockPlot) endPoint() {
 func (c *ClockPlot) showHeld() {
 	h, k := c.touched, Scale()
 	x, y := float32(c.area.XAt(h.x))*k, float32(c.area.YAt(h.lane, h.y))*k
-	c.hint.place(c.Points.Say(h.lane, h.x, h.y), c.Palette(), x, float32(c.area.X+c.area.W)*k, max(0, y-22*k))
+	c.hint.place(c.Points.Say(h.lane, h.x, h.y), c.Palette(), c.Palette().Ink, x, float32(c.area.X+c.area.W)*k, max(0, y-22*k))
 	canvas.Refresh(c)
 }
 
