@@ -182,13 +182,39 @@ func (e *editor) deleteBranch() {
 		return
 	}
 	what := e.lineName(e.line)
-	err := e.s.ctx.Doc().Edit("Delete branch of "+what, func(f *audit.File) error { return cutLines(f, e.name, lines, beyond) })
+	bent, runs := e.sheet.Bent(e.line), e.sheet.Rest(e.line, beyond)
+	stay := slices.DeleteFunc(slices.Clone(e.sheet.Net(e.line)), func(p circuit.PortRef) bool {
+		b := e.drawn.Block(p.Block) // a tank stands on other lines too
+		return slices.Contains(beyond, p) || slices.Contains(beyond, circuit.PortRef{Block: p.Block}) || b == nil || b.Kind == "tank"
+	})
+	err := e.s.ctx.Doc().Edit("Delete branch of "+what, func(f *audit.File) error {
+		if bent {
+			if err := f.Bend(e.name, lines, nil); err != nil {
+				return err
+			}
+		}
+		if err := cutLines(f, e.name, lines, beyond); err != nil || len(runs) == 0 {
+			return err
+		}
+		return f.Bend(e.name, linesOf(f.Circuit(e.name), stay), runs)
+	})
 	if err != nil {
 		e.s.refused(err)
 		return
 	}
 	e.choose("", false)
 	e.s.ctx.Say("Deleted a branch of the line " + what + ". Ctrl+Z brings it back.")
+}
+
+// linesOf are the lines, by their places, that one of the ports is on.
+func linesOf(c *audit.CircuitEntry, ports []circuit.PortRef) []int {
+	var out []int
+	for i, l := range c.Lines {
+		if slices.ContainsFunc(l.Ports, func(p circuit.PortRef) bool { return slices.Contains(ports, p) }) {
+			out = append(out, i)
+		}
+	}
+	return out
 }
 
 // cutLines parts the ports beyond a branch from the others, in each of the lines that are

@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"bytes"
+	"fmt"
 	"slices"
 	"strings"
 	"testing"
@@ -258,6 +259,77 @@ func TestDeleteABranch(t *testing.T) {
 		}
 		b.undone(before, b.doc.UndoName())
 	}
+}
+
+// A branch that was pulled out of a line and is deleted again leaves the line as it was: its
+// other ports, the way it is laid, and no piece laid by hand that only the branch needed.
+func TestDeleteAPulledBranch(t *testing.T) {
+	for _, from := range []func(*testing.T) *bench{drawing, three} {
+		b := from(t)
+		e := b.s.editors[0]
+		if b.line(0, "P1.P") == nil {
+			if err := b.doc.Connect(e.name, "P1.P", "RV1.P"); err != nil {
+				t.Fatal(err)
+			}
+		}
+		if _, err := b.doc.AddBlock(e.name, "accumulator", [2]float64{0, -40}); err != nil {
+			t.Fatal(err)
+		}
+		b.pump()
+		b.s.fitAll()
+		before := b.doc.File().Bytes()
+		net, _ := b.lineOf(0, "P1.P")
+		ports, way := b.line(0, "P1.P"), b.ends(0, net)
+		tried := 0
+		for _, p := range e.sheet.Pieces(net) {
+			a, c, _ := e.sheet.PieceEnds(p)
+			at, _ := e.sheet.OnLine(net, (a[0]+c[0])/2, (a[1]+c[1])/2)
+			on := e.onSheet(at[0], at[1])
+			if b.branches(0, at) != 0 || e.portAt(on) != nil {
+				continue
+			}
+			b.drag(0, on, b.port(0, "AC1.P"), desktop.MouseButtonPrimary, 0)
+			net, _ := b.lineOf(0, "AC1.P")
+			for _, q := range e.sheet.Pieces(net) {
+				if leaf, ok := e.sheet.Leaf(q); ok && leaf.Block == "AC1" {
+					b.click(0, b.port(0, "P1.P").AddXY(0, -float32(1.5*e.zoom)), 0)
+					e.selectPiece(q)
+				}
+			}
+			if e.piece == nil {
+				t.Fatalf("no branch is chosen; said %q", b.said)
+			}
+			pulled := b.doc.File().Bytes()
+			b.key(0, fyne.KeyDelete)
+			net, _ = b.lineOf(0, "P1.P")
+			if got := b.line(0, "P1.P"); !slices.Equal(got, ports) || b.line(0, "AC1.P") != nil {
+				t.Errorf("pulled at %v, deleted: P1.P stands on %v", at, got)
+			}
+			if got := b.ends(0, net); !slices.Equal(got, way) || strings.Trim(b.bends(0), "[]") != "" {
+				t.Errorf("pulled at %v, deleted: the line lies as %v, before as %v; bends %q", at, got, way, b.bends(0))
+			}
+			b.undone(pulled, "Delete branch")
+			b.undone(before, "Connect AC1.P")
+			tried++
+		}
+		if tried == 0 {
+			t.Error("no point of the line was tried")
+		}
+	}
+}
+
+// ends lists the pieces of a line, each from its lesser end, in order.
+func (b *bench) ends(sheet, net int) (out []string) {
+	e := b.s.editors[sheet]
+	for _, p := range e.sheet.Pieces(net) {
+		a, c, _ := e.sheet.PieceEnds(p)
+		if a[0] > c[0] || a[1] > c[1] {
+			a, c = c, a
+		}
+		out = append(out, fmt.Sprint(a, c))
+	}
+	slices.Sort(out)
+	return out
 }
 
 // A drag on a selected line moves the piece sideways; S lays the line as before, to the

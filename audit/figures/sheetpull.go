@@ -71,6 +71,45 @@ func (s *Sheet) Pull(net int, at [2]float64, to circuit.PortRef) (runs [][2][2]f
 	return nil, false
 }
 
+// Rest returns the pieces laid by hand that a line needs to lie as it does once ports are off
+// it, ready for audit.File.Bend: none of those that only the way to these ports needed.
+func (s *Sheet) Rest(net int, off []circuit.PortRef) [][2][2]float64 {
+	if !s.Bent(net) {
+		return nil
+	}
+	boxes, nets := s.routeInput()
+	n, was := nets[net], moduleSteps(s.nets[net].route.Segments)
+	gone := func(k int) bool {
+		line := &s.nets[net]
+		if k < len(line.ends) {
+			e := line.ends[k]
+			return slices.Contains(off, circuit.PortRef{Block: s.parts[e.part].id, Port: e.port})
+		}
+		return slices.Contains(off, circuit.PortRef{Block: s.parts[line.junctions[k-len(line.ends)]].id})
+	}
+	var ports []drawing.PlacedPort
+	for k, p := range n.Ports {
+		if !gone(k) {
+			ports = append(ports, p)
+		}
+	}
+	n.Ports = ports
+	lies := func(runs [][2]drawing.Pt) bool {
+		n.Runs = runs
+		return within(moduleSteps(drawing.RouteAll(boxes, []drawing.Net{n})[0].Segments), was)
+	}
+	if lies(nil) {
+		return nil
+	}
+	runs := s.runsOf(&s.nets[net])
+	for k := len(runs) - 1; k >= 0; k-- {
+		if without := slices.Delete(slices.Clone(runs), k, k+1); lies(without) {
+			runs = without
+		}
+	}
+	return runsAs(runs)
+}
+
 // endNamed finds the end that a port is.
 func (s *Sheet) endNamed(p circuit.PortRef) (end, bool) {
 	for i := range s.parts {
