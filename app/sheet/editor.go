@@ -157,10 +157,12 @@ func (e *editor) label(run *audit.CircuitRun) {
 		e.layBehind()
 		return
 	}
+	saw := e.seesAll()
 	e.sheet = e.plain.Labelled(run.Duties...)
 	if e.fitted {
 		e.s.fitAll()
 	}
+	e.stillSeesAll(saw)
 }
 
 // boxesOf asks a sheet where its blocks lie.

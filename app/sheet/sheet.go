@@ -203,13 +203,14 @@ func (s *Station) solved(name string) *audit.CircuitRun {
 func (s *Station) bringState() {
 	fit := false
 	for i, e := range s.editors {
-		had := e.state != nil
+		had, saw := e.state != nil, e.seesAll()
 		if run := s.run(i); s.ctx.View().Cycle {
 			e.state = figures.OverCycle(run, s.ctx.Clock())
 		} else {
 			e.state = figures.StateAt(run, s.ctx.Clock())
 		}
 		fit = fit || e.fitted && had != (e.state != nil) // the legend takes room, or gives it back
+		e.stillSeesAll(saw && !had)
 		e.hover.stale()
 	}
 	if fit {

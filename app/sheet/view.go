@@ -47,6 +47,25 @@ func (e *editor) fitZoom() float64 {
 	return math.Max(leastZoom, math.Min(fitMost*float64(widgets.Scale()), math.Min(w/sw, h/sh)))
 }
 
+// seesAll tells whether all of the sheet is in view.
+func (e *editor) seesAll() bool {
+	if e.sheet == nil {
+		return false
+	}
+	w, h := e.room()
+	sw, sh := e.sheet.Size()
+	ox, oy := e.sheet.Origin()
+	x, y := e.x+ox*e.zoom, e.y+oy*e.zoom
+	return x > -1 && y > -1 && x+sw*e.zoom < w+1 && y+sh*e.zoom < h+1
+}
+
+// stillSeesAll fits a sheet that was all in view before results took room on it.
+func (e *editor) stillSeesAll(before bool) {
+	if before && !e.fitted && !e.seesAll() {
+		e.fit(e.fitZoom())
+	}
+}
+
 // fit shows the sheet whole, in the middle, at a zoom.
 func (e *editor) fit(zoom float64) {
 	if e.sheet == nil || zoom <= 0 {
