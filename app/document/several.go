@@ -9,10 +9,10 @@ import (
 	"barlitre/machines/units"
 )
 
-// SetAll sets one value of several blocks, or of one, as one step of undo. On an error
-// none is changed.
-func (d *Document) SetAll(targets []string, quantity string) error {
-	return d.each("", targets, func(f *audit.File, target string) error { return f.Set(target, quantity) })
+// SetAll sets one value of several blocks, or of one, as one step of undo, with what follows
+// from it. On an error none is changed.
+func (d *Document) SetAll(targets []string, quantity string, then ...func(*audit.File) error) error {
+	return d.each("", targets, func(f *audit.File, target string) error { return f.Set(target, quantity) }, then...)
 }
 
 // DropAll takes one value out of several blocks, or of one; see Drop.
@@ -21,7 +21,7 @@ func (d *Document) DropAll(targets []string) error {
 }
 
 // each does one edit on several targets.
-func (d *Document) each(verb string, targets []string, do func(f *audit.File, target string) error) error {
+func (d *Document) each(verb string, targets []string, do func(f *audit.File, target string) error, then ...func(*audit.File) error) error {
 	if len(targets) == 0 {
 		return nil
 	}
@@ -37,6 +37,11 @@ func (d *Document) each(verb string, targets []string, do func(f *audit.File, ta
 	return d.Edit(name, func(f *audit.File) error {
 		for _, target := range targets {
 			if err := do(f, target); err != nil {
+				return err
+			}
+		}
+		for _, do := range then {
+			if err := do(f); err != nil {
 				return err
 			}
 		}

@@ -251,7 +251,7 @@ func newSelectRow(p *panel, title, name, target string, options []string) *selec
 					return err
 				}
 			}
-			return p.set(target, text)
+			return p.choose(target, text)
 		}
 		if text == none {
 			change = func() error { return p.drop(target) }

@@ -1,0 +1,58 @@
+package sheet
+
+import (
+	"testing"
+
+	"barlitre/audit/figures"
+)
+
+// A choice that makes a symbol larger puts aside what it would lie over, in one step of undo;
+// nothing else moves.
+func TestGrownSymbolGetsRoom(t *testing.T) {
+	b := newBench(t, "", window)
+	if err := b.doc.OpenEmpty(); err != nil {
+		t.Fatal(err)
+	}
+	b.pump()
+	e := b.s.editors[0]
+	e.add("pump", [2]float64{0, 0})
+	b.pump()
+	for _, x := range []struct {
+		kind string
+		at   [2]float64
+	}{{"relief", [2]float64{10, 0}}, {"filter", [2]float64{40, 0}}} {
+		if _, err := b.doc.AddBlock(e.name, x.kind, x.at); err != nil {
+			t.Fatal(err)
+		}
+	}
+	b.pump()
+	over := func() []string {
+		var out []string
+		for _, q := range e.boxes {
+			for _, r := range e.boxes {
+				if q.id < r.id && q.x < r.x+r.w && r.x < q.x+q.w && q.y < r.y+r.h && r.y < q.y+q.h {
+					out = append(out, q.id+" "+r.id)
+				}
+			}
+		}
+		return out
+	}
+	if got := over(); got != nil {
+		t.Fatalf("before: %v", got)
+	}
+	before := b.doc.File().Bytes()
+	b.Select(0, "RV1")
+	b.Select(0, "P1")
+	if err := b.s.panel.choose(e.name+"/P1.control", "load_sensing"); err != nil {
+		t.Fatal(err)
+	}
+	b.pump()
+	if moved := figures.MakeRoom(e.drawn, "P1"); len(moved) > 0 || over() != nil {
+		t.Errorf("still over each other: %v, %v", over(), moved)
+	}
+	x, _, _ := e.sheet.At("RV1")
+	if fx, fy, _ := e.sheet.At("F1"); x == 10 || fx != 40 || fy != 0 || len(b.said) == 0 {
+		t.Errorf("RV1 at %g, F1 at %g, %g; said %q", x, fx, fy, b.said)
+	}
+	b.undone(before, "P1")
+}
