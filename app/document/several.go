@@ -40,25 +40,21 @@ func (d *Document) each(verb string, targets []string, do func(f *audit.File, ta
 				return err
 			}
 		}
-		for _, do := range then {
-			if err := do(f); err != nil {
-				return err
-			}
-		}
-		return nil
+		return inTurn(f, then)
 	})
 }
 
 // TakeValue gives a parameter of a block the value, and the origin, that the block of
-// the same id has in another circuit; where it is left at its default there, here too.
-func (d *Document) TakeValue(circuitName, block, key, from string) error {
+// the same id has in another circuit, with what follows from it; where it is left at its
+// default there, here too.
+func (d *Document) TakeValue(circuitName, block, key, from string, then ...func(*audit.File) error) error {
 	there := d.File().Circuit(from)
 	if there == nil || there.Block(block) == nil {
 		return fmt.Errorf("there is no %s in circuit %q to take %s from", block, from, key)
 	}
 	b, target := there.Block(block), circuitName+"/"+block+"."+key
 	v, isNumber := b.Values[key]
-	return d.Edit("Take "+block+"."+key+" from "+from, func(f *audit.File) error {
+	take := func(f *audit.File) error {
 		switch {
 		case isNumber:
 			if err := f.Set(target, units.FileText(v.SI, v.Unit)); err != nil {
@@ -72,5 +68,18 @@ func (d *Document) TakeValue(circuitName, block, key, from string) error {
 			return f.Set(target, b.Word(key))
 		}
 		return f.Drop(target)
+	}
+	return d.Edit("Take "+block+"."+key+" from "+from, func(f *audit.File) error {
+		return inTurn(f, append([]func(*audit.File) error{take}, then...))
 	})
+}
+
+// inTurn does one thing after the other, up to the first error.
+func inTurn(f *audit.File, all []func(*audit.File) error) error {
+	for _, do := range all {
+		if err := do(f); err != nil {
+			return err
+		}
+	}
+	return nil
 }

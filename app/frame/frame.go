@@ -308,10 +308,10 @@ func (f *Frame) Text(si float64, d units.Dim, digits int) string {
 
 // Local puts the user's decimal sign into a text: a point between two digits.
 func (f *Frame) Local(text string) string {
-	if !f.settings.comma {
-		return text
+	if change := f.Words(); change != nil {
+		return change(text)
 	}
-	return units.DecimalComma(text)
+	return text
 }
 
 // Words is Local as it is now.

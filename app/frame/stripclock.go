@@ -74,10 +74,9 @@ func (c *clockFigure) follow(read bool) {
 		c.text = pen.Shorten(s.f.Local(s.atClock()), flagText, true, w-s.area.X-20)
 	}
 	// The values stand over the numbers of the axis: there they hide no phase and no track.
-	wide := pen.TextWidth(c.text, flagText, true) + 2*flagSide
-	c.wide = wide
-	c.flag.Move(at(max(stripPad+s.area.X, min(w-4-wide, x-wide/2)), foot))
-	c.flag.Resize(size(wide, flagHigh))
+	c.wide = pen.TextWidth(c.text, flagText, true) + 2*flagSide
+	c.flag.Move(at(max(stripPad+s.area.X, min(w-4-c.wide, x-c.wide/2)), foot))
+	c.flag.Resize(size(c.wide, flagHigh))
 	if read {
 		c.flag.Refresh()
 	}

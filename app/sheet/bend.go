@@ -196,7 +196,11 @@ func (e *editor) deleteBranch() {
 		if err := cutLines(f, e.name, lines, beyond); err != nil || len(runs) == 0 {
 			return err
 		}
-		return f.Bend(e.name, linesOf(f.Circuit(e.name), stay), runs)
+		left := linesOf(f.Circuit(e.name), stay)
+		if len(left) == 0 { // tanks alone: each of their symbols has a line of its own
+			return nil
+		}
+		return f.Bend(e.name, left, runs)
 	})
 	if err != nil {
 		e.s.refused(err)

@@ -79,7 +79,8 @@ func newBeside(p *panel, q *circuit.Param, after func(error)) *besideRow {
 		c, b := p.at()
 		other, twin := p.compared()
 		if twin != nil {
-			after(p.s.ctx.Doc().TakeValue(c.Name, b.ID, q.Key, other.Name))
+			room := p.s.room(c.Name)
+			after(room.said(p.s.ctx.Doc().TakeValue(c.Name, b.ID, q.Key, other.Name, room.make)))
 		}
 	}), "field."+q.Key+".take")
 	r.content = container.New(headLine{}, r.text, canvas.NewText("", nil), r.take)

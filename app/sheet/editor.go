@@ -105,6 +105,9 @@ func (e *editor) show(at int, c *circuit.Circuit) {
 	kept, before, rough := e.keep(c), e.plain, e.sheet
 	e.selectLine(-1)
 	e.selectMarks(nil, -1)
+	if !large(c) {
+		e.film.release()
+	}
 	other := c == nil || e.name != c.Name
 	e.circuit, e.drawn, e.moved, e.plain, e.sheet, e.labels, e.boxes, e.ports, e.name = at, c, nil, nil, nil, nil, nil, nil, ""
 	if c == nil {
@@ -152,12 +155,13 @@ func (e *editor) label(run *audit.CircuitRun) {
 	if e.plain == nil || run == nil || run == e.labels {
 		return
 	}
-	e.labels = run
 	if large(e.drawn) {
+		e.labels = run
 		e.layBehind()
 		return
 	}
-	saw := e.seesAll()
+	saw := e.labels == nil && e.seesAll()
+	e.labels = run
 	e.sheet = e.plain.Labelled(run.Duties...)
 	if e.fitted {
 		e.s.fitAll()

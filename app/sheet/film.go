@@ -2,6 +2,7 @@ package sheet
 
 import (
 	"image"
+	"time"
 
 	"barlitre/audit/pen"
 )
@@ -14,13 +15,17 @@ type film struct {
 	shown  *image.RGBA    // nil = the sheet is drawn as it is painted
 	made   chan finished  // not nil while one is being made, which comes out of it
 	again  bool           // the clock has moved on meanwhile
-	cut    int            // counts what makes a drawing under way useless
+	edits  int            // counts what makes a drawing under way useless
+	last   time.Time      // when the clock last moved
 }
+
+// pause is after how long the clock does not run any more: what was drawn by then may be old.
+const pause = 500 * time.Millisecond
 
 // finished is a drawing that was made.
 type finished struct {
-	img *image.RGBA
-	cut int // count when it was begun
+	img   *image.RGBA
+	edits int // count when it was begun
 }
 
 // shows is the drawing for a size in pixels, nil if there is none.
@@ -38,14 +43,23 @@ func (f *film) shows(w, h int) image.Image {
 // stop has the sheet drawn as it is painted: something else than the clock has changed.
 func (f *film) stop() {
 	f.shown, f.again = nil, false
-	f.cut++
+	f.edits++
+}
+
+// release gives its pictures up, unless one is being made.
+func (f *film) release() {
+	if f.stop(); f.made == nil {
+		f.pen, f.frames = nil, [2]*image.RGBA{}
+	}
 }
 
 // roll shows the drawing that is ready and begins that of the instant of the clock. It reports
-// false for a sheet that is drawn quickly, is not painted yet or is being changed.
+// false for a sheet that is drawn quickly, is not shown or painted yet or is being changed, and
+// for the first step of the clock after a pause.
 func (e *editor) roll() bool {
-	f := &e.film
-	if !large(e.drawn) || e.pen == nil || e.moved != nil || e.laying.bare != nil || e.sheet == nil || e.Size().Width <= 0 {
+	f, now := &e.film, time.Now()
+	runs := now.Sub(f.last) < pause
+	if f.last = now; !runs || !e.s.sheetShown(e.index) || !large(e.drawn) || e.pen == nil || e.moved != nil || e.laying.bare != nil || e.sheet == nil || e.Size().Width <= 0 {
 		return false
 	}
 	e.takeFrame()
@@ -63,15 +77,14 @@ func (e *editor) roll() bool {
 	}
 	made := make(chan finished, 1)
 	f.made = made
-	p, cut, m := e.picture(e.sheet, true).kept(), f.cut, f.pen
-	pixels := float64(size.Dx()) / float64(e.Size().Width)
+	p, edits, m, pixels := e.picture(e.sheet, true).kept(), f.edits, f.pen, e.pixels(size.Dx())
 	go func() {
 		m.Begin(p.ground)
 		p.draw(m, pixels)
 		m.Flush()
 		copy(to.Pix, m.Image().Pix)
-		made <- finished{to, cut}
-		post(e.lastFrame) // the clock may be at rest by then; while it runs, the next step takes it sooner
+		made <- finished{to, edits}
+		post(e.frameMade) // the clock may be at rest by then; while it runs, the next step takes it sooner
 	}()
 	return true
 }
@@ -82,7 +95,7 @@ func (e *editor) takeFrame() {
 	select {
 	case d := <-f.made:
 		f.made = nil
-		if d.cut == f.cut {
+		if d.edits == f.edits {
 			f.shown = d.img
 			e.raster.Refresh()
 		}
@@ -90,8 +103,8 @@ func (e *editor) takeFrame() {
 	}
 }
 
-// lastFrame shows the drawing that is ready, and makes another if the clock has moved on.
-func (e *editor) lastFrame() {
+// frameMade shows the drawing that is ready, and makes another if the clock has moved on.
+func (e *editor) frameMade() {
 	if e.takeFrame(); e.film.again && e.film.made == nil {
 		e.redrawClock()
 	}

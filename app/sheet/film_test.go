@@ -28,6 +28,7 @@ func TestFilmShowsWhatIsDrawn(t *testing.T) {
 	for _, comma := range []bool{false, true} {
 		b.comma = comma
 		for _, ts := range [][]float64{{12.3}, {20, 21, 22, 26.7}, {3}} {
+			b.SetClock(1)           // the first step after a pause is drawn at once
 			for _, at := range ts { // those that come meanwhile are passed over, but for the last
 				b.SetClock(at)
 			}
@@ -53,6 +54,9 @@ func TestFilmIsCut(t *testing.T) {
 	e := b.s.editors[0]
 	w, h := int(e.Size().Width), int(e.Size().Height)
 	e.paint(w, h)
+	if b.SetClock(4); e.film.made != nil {
+		t.Error("the first step is not drawn at once")
+	}
 	b.SetClock(5)
 	if e.film.made == nil {
 		t.Fatal("no drawing was begun")
@@ -69,6 +73,13 @@ func TestFilmIsCut(t *testing.T) {
 	if e.film.shown == nil || e.state.T != 7 {
 		t.Error("the clock that moved on after the change is not shown")
 	}
+	b.s.single, b.s.active = true, 1
+	if b.SetClock(8); e.film.made != nil {
+		t.Error("a sheet that is not shown is drawn")
+	}
+	b.s.single, b.s.active = true, 0
+	b.SetClock(9)
+	b.rolled(e)
 	if e.paint(w-1, h); e.film.shown != nil {
 		t.Error("a drawing of another size is kept")
 	}

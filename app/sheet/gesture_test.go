@@ -11,6 +11,7 @@ import (
 	"fyne.io/fyne/v2/driver/desktop"
 
 	"barlitre/app/station"
+	"barlitre/audit"
 	"barlitre/audit/figures"
 )
 
@@ -316,6 +317,45 @@ func TestDeleteAPulledBranch(t *testing.T) {
 			t.Error("no point of the line was tried")
 		}
 	}
+}
+
+// The only branch of a bent line that leads to no tank is deleted like any other.
+func TestDeleteABranchAmongTanks(t *testing.T) {
+	b := three(t)
+	e := b.s.editors[0]
+	for i, at := range [][2]float64{{20, 60}, {50, 60}} {
+		id, err := b.doc.AddBlock(e.name, "tank", at)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := b.doc.Connect(e.name, []string{"RV1.T", "RV1.T"}[i], id+".T"); err != nil {
+			t.Fatal(err)
+		}
+	}
+	b.pump()
+	net, _ := b.lineOf(0, "RV1.T")
+	lines, _ := e.sheet.Lines(net)
+	runs := e.sheet.Bend(e.sheet.Pieces(net)[len(e.sheet.Pieces(net))-1], 3)
+	if err := b.doc.Edit("Bend line", func(f *audit.File) error { return f.Bend(e.name, lines, runs) }); err != nil {
+		t.Fatal(err)
+	}
+	b.pump()
+	net, _ = b.lineOf(0, "RV1.T")
+	b.click(0, b.port(0, "P1.P").AddXY(0, -float32(1.5*e.zoom)), 0)
+	for _, q := range e.sheet.Pieces(net) {
+		if leaf, ok := e.sheet.Leaf(q); ok && leaf.Block == "RV1" {
+			e.selectPiece(q)
+		}
+	}
+	before := b.doc.File().Bytes()
+	if e.piece == nil || len(runs) == 0 {
+		t.Fatalf("no branch is chosen of %v", e.sheet.Net(net))
+	}
+	b.key(0, fyne.KeyDelete)
+	if b.line(0, "RV1.T") != nil {
+		t.Errorf("RV1.T stands on %v; said %q", b.line(0, "RV1.T"), b.said)
+	}
+	b.undone(before, "Delete")
 }
 
 // ends lists the pieces of a line, each from its lesser end, in order.

@@ -47,6 +47,9 @@ func (e *editor) paint(w, h int) image.Image {
 // ink draws a sheet over what is drawn already.
 func (e *editor) ink(sh *figures.Sheet, legend bool) {
 	if size := e.Size(); size.Width > 0 && size.Height > 0 {
-		e.picture(sh, legend).draw(e.pen, float64(e.pen.Image().Rect.Dx())/float64(size.Width))
+		e.picture(sh, legend).draw(e.pen, e.pixels(e.pen.Image().Rect.Dx()))
 	}
 }
+
+// pixels is how many pixels a unit has in a picture so wide.
+func (e *editor) pixels(width int) float64 { return float64(width) / float64(e.Size().Width) }

@@ -7,46 +7,45 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/figures"
-	"barlitre/circuit"
 )
 
-// choose is set for a choice, which may change the symbol of its block: what a grown symbol
-// would lie over is put aside in the same step.
+// choose is set for a choice, which may change the symbol of its block.
 func (p *panel) choose(target, text string) error {
-	name, _, _ := strings.Cut(target, "/")
-	doc := p.s.ctx.Doc()
-	was := symbolsOf(doc.File().Circuit(name))
-	var aside []string
-	err := doc.SetAll(p.targets(target), text, func(f *audit.File) error {
-		c := f.Circuit(name)
-		var grown []string
-		for id, symbol := range symbolsOf(c) {
-			if symbol != was[id] {
-				grown = append(grown, id)
-			}
-		}
-		if len(grown) == 0 {
-			return nil
-		}
-		places := figures.MakeRoom(c.Circuit, grown...)
-		if aside = slices.Sorted(maps.Keys(places)); len(aside) == 0 {
-			return nil
-		}
-		return f.Place(name, places, nil)
-	})
-	if err == nil && len(aside) > 0 {
-		p.s.ctx.Say("The new symbol needs room: " + strings.Join(aside, ", ") + " put aside. Ctrl+Z takes both back.")
-	}
-	return err
+	room := p.s.room(target[:max(0, strings.LastIndex(target, "/"))])
+	return room.said(p.s.ctx.Doc().SetAll(p.targets(target), text, room.make))
 }
 
-// symbolsOf are the symbols of the blocks of a circuit, by block; none of a circuit that is not there.
-func symbolsOf(c *audit.CircuitEntry) map[string]string {
-	out := map[string]string{}
-	if c != nil {
-		for i := range c.Blocks {
-			out[c.Blocks[i].ID] = circuit.SymbolOf(c.Circuit, &c.Blocks[i])
-		}
+// room puts aside what other symbols of blocks would lie over, in the same step as the change
+// that brings them.
+type room struct {
+	s     *Station
+	name  string // of the circuit
+	was   *audit.CircuitEntry
+	aside []string
+}
+
+// room is that for a change of a circuit as it is now.
+func (s *Station) room(circuitName string) *room {
+	return &room{s: s, name: circuitName, was: s.ctx.Doc().File().Circuit(circuitName)}
+}
+
+// make makes room in the changed file.
+func (r *room) make(f *audit.File) error {
+	c := f.Circuit(r.name)
+	if r.was == nil || c == nil {
+		return nil
 	}
-	return out
+	places := figures.MakeRoom(r.was.Circuit, c.Circuit)
+	if r.aside = slices.Sorted(maps.Keys(places)); len(r.aside) == 0 {
+		return nil
+	}
+	return f.Place(r.name, places, nil)
+}
+
+// said tells what was put aside, if the change was made.
+func (r *room) said(err error) error {
+	if err == nil && len(r.aside) > 0 {
+		r.s.ctx.Say("The new symbol needs room: " + strings.Join(r.aside, ", ") + " put aside. Ctrl+Z takes both back.")
+	}
+	return err
 }

@@ -59,10 +59,23 @@ func (e *editor) seesAll() bool {
 	return x > -1 && y > -1 && x+sw*e.zoom < w+1 && y+sh*e.zoom < h+1
 }
 
-// stillSeesAll fits a sheet that was all in view before results took room on it.
+// stillSeesAll brings a sheet into view again that was all in view before its first results took
+// room on it; with it the other, if both were at one zoom. It counts as placed by hand as before.
 func (e *editor) stillSeesAll(before bool) {
-	if before && !e.fitted && !e.seesAll() {
+	if !before || e.fitted || e.seesAll() {
+		return
+	}
+	together, fitted := true, [2]bool{}
+	for i, o := range e.s.editors {
+		together, fitted[i] = together && (!e.s.sheetShown(i) || o.zoom == e.zoom), o.fitted
+	}
+	if together {
+		e.s.fitAll()
+	} else {
 		e.fit(e.fitZoom())
+	}
+	for i, o := range e.s.editors {
+		o.fitted = fitted[i]
 	}
 }
 

@@ -34,5 +34,6 @@
 // point where it flows. A disc behind a block has the area of its heat. Pressures [Pa]
 // and flows [m³/s] are those of the signals of a run, flow into a block positive.
 //
-// The places of what can be pointed at are returned, in the units of the caller.
+// The places of what can be pointed at are returned, in the units of the caller; those of a
+// sheet by Regions.
 package figures

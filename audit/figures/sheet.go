@@ -23,7 +23,7 @@ type Sheet struct {
 	labels    []sheetLabel
 	notes     []sheetNote
 	veil      *veil // what is not drawn, nil = all is
-	still     *still
+	fixture   *fixture
 	laid      *routing
 	stale     map[int]bool // nets of a rough sheet that are to be laid
 	seen      *seen        // nil before there are results

@@ -100,7 +100,7 @@ func (s *Sheet) relay(stale map[int]bool, nets []drawing.Net) {
 			stretches = append(stretches, s.cut(i, nets[i])...)
 		}
 	}
-	s.stretches, s.still = stretches, &still{}
+	s.stretches, s.fixture = stretches, &fixture{}
 	var crossings []drawing.Crossing
 	for _, c := range s.crossings {
 		if !stale[c.Over] && !stale[c.Under] {

@@ -78,7 +78,7 @@ type sheetDrawing struct {
 	pal    Palette
 	scales SheetScales
 	most   float64 // heat of the largest disc
-	fixed  *still
+	fixed  *fixture
 	now    []netNow
 	tints  []color.NRGBA // of the lines
 	warm   color.NRGBA   // of numbers that belong to a disc

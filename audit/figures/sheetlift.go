@@ -16,7 +16,7 @@ type veil struct{ parts, nets, notes, groups map[int]bool }
 // veiled is the sheet without what a veil hides.
 func (s *Sheet) veiled(v *veil) *Sheet {
 	out := *s
-	out.veil, out.still = v, &still{}
+	out.veil, out.fixture = v, &fixture{}
 	return &out
 }
 

@@ -77,7 +77,7 @@ func (d *sheetDrawing) line(i int) {
 	case drawing.Electric:
 		d.electric(st)
 	default:
-		d.p.Polyline(d.fixed.stretchs[i].pts, false, color.NRGBA{}, d.stroke(st))
+		d.p.Polyline(d.fixed.stretches[i].pts, false, color.NRGBA{}, d.stroke(st))
 	}
 }
 

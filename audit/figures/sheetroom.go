@@ -11,27 +11,46 @@ import (
 // asideReach is how far off a block that gives way is put at most [M].
 const asideReach = 60
 
-// MakeRoom finds places for the blocks that the symbols of the named ones lie over, as after
-// one has grown: for each the nearest where it stands clear of all others, in the circuit's own
-// coordinates [M]. Blocks without a place of their own get out of the way by themselves.
-func MakeRoom(c *circuit.Circuit, grown ...string) map[string][2]float64 {
-	s := &Sheet{circuit: c, parts: partsOf(c)}
-	s.connect()
-	s.place()
+// MakeRoom finds places for the blocks that other symbols of a changed circuit lie over, and
+// those they had did not: for each the nearest where it stands clear of all others, in the
+// circuit's own coordinates [M]. Blocks without a place of their own get out of the way by
+// themselves.
+func MakeRoom(was, c *circuit.Circuit) map[string][2]float64 {
+	before, s := placed(was), placed(c)
 	moved := map[string][2]float64{}
 	for i := range s.parts {
-		if p := &s.parts[i]; !p.copied && slices.Contains(grown, p.id) {
-			s.giveWay(i, grown, moved)
+		p := &s.parts[i]
+		if k := before.partOf(p.id); !p.copied && k >= 0 && before.parts[k].base.Name != p.base.Name {
+			s.giveWay(i, before, moved)
 		}
 	}
 	return moved
 }
 
-// giveWay moves what part i lies over.
-func (s *Sheet) giveWay(i int, grown []string, moved map[string][2]float64) {
+// placed is a circuit with its blocks at their places, and no lines.
+func placed(c *circuit.Circuit) *Sheet {
+	s := &Sheet{circuit: c, parts: partsOf(c)}
+	s.connect()
+	s.place()
+	return s
+}
+
+// partOf is the place of the symbol of a block among the parts, -1 for none.
+func (s *Sheet) partOf(id string) int {
+	return slices.IndexFunc(s.parts, func(p part) bool { return p.id == id && !p.copied })
+}
+
+// over tells whether the symbols of two parts lie over each other.
+func (s *Sheet) over(i, k int) bool {
+	return i >= 0 && k >= 0 && shared(s.parts[i].symbol.Box(), s.parts[k].symbol.Box()) > 0
+}
+
+// giveWay moves what part i lies over, unless it did so before.
+func (s *Sheet) giveWay(i int, before *Sheet, moved map[string][2]float64) {
 	for k := range s.parts {
 		o := &s.parts[k]
-		if k == i || o.copied || !o.fixed || o.isJunction() || slices.Contains(grown, o.id) || shared(s.parts[i].symbol.Box(), o.symbol.Box()) == 0 {
+		if _, done := moved[o.id]; k == i || done || o.copied || !o.fixed || o.isJunction() || !s.over(i, k) ||
+			before.over(before.partOf(s.parts[i].id), before.partOf(o.id)) {
 			continue
 		}
 		if at, ok := s.aside(k); ok {

@@ -37,7 +37,7 @@ func (before *Sheet) Rough(c *circuit.Circuit) *Sheet {
 		s.nets[i].route = r.routes[i]
 	}
 	maps.DeleteFunc(s.stale, func(_ int, stale bool) bool { return !stale })
-	s.laid, s.still = r, &still{}
+	s.laid, s.fixture = r, &fixture{}
 	for i := range s.nets {
 		s.stretches = append(s.stretches, s.cut(i, nets[i])...)
 	}

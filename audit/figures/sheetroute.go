@@ -54,7 +54,7 @@ func (s *Sheet) route(before *Sheet) {
 	for i := range routes {
 		s.nets[i].route = routes[i]
 	}
-	s.stretches, s.still = nil, &still{}
+	s.stretches, s.fixture = nil, &fixture{}
 	for i := range s.nets {
 		s.stretches = append(s.stretches, s.cut(i, nets[i])...)
 	}

@@ -35,8 +35,9 @@ type face struct {
 	cleaned map[string]string  // of texts that are more than plain ones
 }
 
-// mostTexts is how many texts a face remembers; then it forgets all.
-const mostTexts = 4000
+// mostTexts is how many texts a face remembers, then it forgets all; longText is from how many
+// bytes on it remembers none.
+const mostTexts, longText = 4000, 200
 
 // faces holds the regular and the bold face, parsed on first use. The embedded
 // fonts are checked by the tests of assets, so a parse error is a broken build.
@@ -107,6 +108,9 @@ func (f *face) textWidth(s string) float64 {
 
 // remember keeps what was found of a text.
 func remember[V any](of map[string]V, s string, v V) {
+	if len(s) >= longText {
+		return
+	}
 	if len(of) >= mostTexts {
 		clear(of)
 	}
@@ -137,7 +141,7 @@ func Clean(s string) string {
 	defer f.mu.Unlock()
 	out, ok := f.cleaned[s]
 	if !ok {
-		out = f.clean(s)
+		out = strings.Clone(f.clean(s)) // or it may keep all of a long text
 		remember(f.cleaned, s, out)
 	}
 	return out

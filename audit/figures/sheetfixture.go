@@ -8,46 +8,46 @@ import (
 	"barlitre/circuit/drawing"
 )
 
-// still is what every drawing of a sheet needs and no instant changes. It is worked out at
+// fixture is what every drawing of a sheet needs and no instant changes. It is worked out at
 // the first drawing, and belongs to one set of parts, lines and veil: what changes one of
-// these takes a new one.
-type still struct {
-	once     sync.Once
-	stubs    []stub
-	asLine   [][]bool // by part: pieces of its symbol that are drawn as lines
-	stretchs []stillStretch
-	over     [][2]*stretch // by crossing: the stretches that run upright and level, nil for none
-	dots     [][]stillDot  // by net
-	ends     [][]endSignals
+// these takes a new one, which may be before it is done, for nothing is worked out until then.
+type fixture struct {
+	once      sync.Once
+	stubs     []stub
+	asLine    [][]bool // by part: pieces of its symbol that are drawn as lines
+	stretches []fixedStretch
+	over      [][2]*stretch // by crossing: the stretches that run upright and level, nil for none
+	dots      [][]fixedDot  // by net
+	ends      [][]endSignals
 }
 
 // endSignals are the names of pressure and flow at an end of a net.
 type endSignals struct{ p, q string }
 
-// stillStretch is what is known of a stretch.
-type stillStretch struct {
+// fixedStretch is what is known of a stretch.
+type fixedStretch struct {
 	pts  []pen.Pt
 	tips [2][]chevron // for flow along the points and against them
 }
 
-// stillDot is a place where lines of a net meet.
-type stillDot struct {
+// fixedDot is a place where lines of a net meet.
+type fixedDot struct {
 	at   pen.Pt
 	ends []*stretch // that end there
 }
 
 // fixed returns what no instant changes.
-func (s *Sheet) fixed() *still {
-	k := s.still
+func (s *Sheet) fixed() *fixture {
+	k := s.fixture
 	if k == nil {
-		k = &still{}
+		k = &fixture{}
 	}
 	k.once.Do(func() { k.find(s) })
 	return k
 }
 
 // find works it out for what is not veiled.
-func (k *still) find(s *Sheet) {
+func (k *fixture) find(s *Sheet) {
 	k.stubs = s.stubs()
 	k.asLine = make([][]bool, len(s.parts))
 	for _, sb := range k.stubs {
@@ -56,7 +56,7 @@ func (k *still) find(s *Sheet) {
 		}
 		k.asLine[sb.part][sb.prim] = true
 	}
-	k.stretchs = make([]stillStretch, len(s.stretches))
+	k.stretches = make([]fixedStretch, len(s.stretches))
 	of := make([][]*stretch, len(s.nets))
 	for i := range s.stretches {
 		st := &s.stretches[i]
@@ -64,7 +64,7 @@ func (k *still) find(s *Sheet) {
 			continue
 		}
 		of[st.net] = append(of[st.net], st)
-		k.stretchs[i] = stillStretch{penPts(st.pts), [2][]chevron{s.chevrons(st, 1), s.chevrons(st, -1)}}
+		k.stretches[i] = fixedStretch{penPts(st.pts), [2][]chevron{s.chevrons(st, 1), s.chevrons(st, -1)}}
 	}
 	k.over = make([][2]*stretch, len(s.crossings))
 	for i, c := range s.crossings {
@@ -79,13 +79,13 @@ func (k *still) find(s *Sheet) {
 			k.ends[i] = append(k.ends[i], endSignals{name + ".p", name + ".q"})
 		}
 	}
-	k.dots = make([][]stillDot, len(s.nets))
+	k.dots = make([][]fixedDot, len(s.nets))
 	for i := range s.nets {
 		if !s.nets[i].kind.Fluid() || s.veil.net(i) {
 			continue
 		}
 		for _, at := range s.nets[i].route.Dots {
-			d := stillDot{at: penPt(at)}
+			d := fixedDot{at: penPt(at)}
 			for _, st := range of[i] {
 				if st.pts[0] == at || st.pts[len(st.pts)-1] == at {
 					d.ends = append(d.ends, st)
@@ -97,17 +97,17 @@ func (k *still) find(s *Sheet) {
 }
 
 // drawnAsLine tells whether a piece of a symbol is drawn with the line at it.
-func (k *still) drawnAsLine(part, prim int) bool {
+func (k *fixture) drawnAsLine(part, prim int) bool {
 	of := k.asLine[part]
 	return of != nil && of[prim]
 }
 
 // tipsFor returns the marks of direction of a stretch with flow q along its points.
-func (k *still) tipsFor(stretch int, q float64) []chevron {
+func (k *fixture) tipsFor(stretch int, q float64) []chevron {
 	if q < 0 {
-		return k.stretchs[stretch].tips[1]
+		return k.stretches[stretch].tips[1]
 	}
-	return k.stretchs[stretch].tips[0]
+	return k.stretches[stretch].tips[0]
 }
 
 // stretchAt finds the one of the stretches that passes a point upright or level.
@@ -124,7 +124,7 @@ func stretchAt(of []*stretch, at drawing.Pt, upright bool) *stretch {
 }
 
 // widest is the width of the widest of the stretches that end at a dot.
-func (d *sheetDrawing) widest(dot stillDot) float64 {
+func (d *sheetDrawing) widest(dot fixedDot) float64 {
 	w := 0.0
 	for _, st := range dot.ends {
 		w = math.Max(w, d.strokeWidth(st))
