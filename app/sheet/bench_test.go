@@ -105,7 +105,7 @@ func (b *bench) told(e document.Event) {
 // solved waits until the present revision is solved and told.
 func (b *bench) solved() {
 	b.t.Helper()
-	deadline := time.After(30 * time.Second)
+	deadline := time.After(3 * time.Minute) // with the race detector on a busy machine
 	for {
 		if running, _, _ := b.doc.Solving(); !running && len(b.queue) == 0 && !b.laying() {
 			return
