@@ -1,6 +1,8 @@
 package sheet
 
 import (
+	"slices"
+
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/container"
@@ -236,14 +238,22 @@ type selectRow struct {
 	value   func() (selected, hint string)
 	options func() []string                 // nil where they stay the same
 	pick    func(text string) (bool, error) // of what is no value; nil where there is none
+	called  func(word string) string        // what a word of the file is called in the list
 	filling bool
 }
 
-func newSelectRow(p *panel, title, name, target string, options []string) *selectRow {
-	r := &selectRow{base: newBase(p, title, target)}
+func newSelectRow(p *panel, title, name, target string, words []string, called func(string) string) *selectRow {
+	r := &selectRow{base: newBase(p, title, target), called: called}
+	options := make([]string, len(words))
+	for i, w := range words {
+		options[i] = called(w)
+	}
 	r.sel = widgets.NewSelect(options, func(text string) {
 		if r.filling {
 			return
+		}
+		if i := slices.Index(options, text); i >= 0 {
+			text = words[i]
 		}
 		change := func() error {
 			if r.pick != nil {
@@ -279,6 +289,7 @@ func (r *selectRow) fill() {
 	r.filling = true
 	defer func() { r.filling = false }()
 	selected, hint := r.value()
+	selected = r.called(selected)
 	if r.options != nil {
 		r.sel.Options = r.options()
 	}
