@@ -254,7 +254,7 @@ func (s *Station) sourceOf(d *cycle.Duty) string {
 // Mend reports whether a duty is at fault.
 func (s *Station) Mend() bool {
 	for _, f := range s.ctx.Doc().Findings() {
-		if ofDuty(f) && (f.Level == circuit.Stops || f.Level == circuit.Warns) {
+		if ofDuty(f) && f.ToMend() {
 			return true
 		}
 	}
