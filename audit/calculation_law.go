@@ -82,7 +82,7 @@ func (l *law) values(s *Solution, p printer) string {
 func spread(r ParameterRow) string {
 	switch {
 	case r.Low != "" && r.High != "":
-		return ", " + r.Low + " to " + r.High
+		return ", " + units.Range(r.Low, r.High)
 	case r.Low != "":
 		return ", from " + r.Low
 	case r.High != "":
