@@ -22,7 +22,7 @@ type numberRow struct {
 	block   string
 	more    *link
 	extra   []*fieldRow
-	about   *widget.Label
+	about   *widgets.Text
 	drop    *link // takes the value out
 	beside  *besideRow
 }

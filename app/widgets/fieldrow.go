@@ -12,13 +12,12 @@ import (
 // FieldRow puts a name before a field and room for its note under it, which is taken
 // only when there is a note.
 func FieldRow(name string, f *Field) fyne.CanvasObject {
-	f.Note = widget.NewLabel("")
-	f.Note.Wrapping = fyne.TextWrapWord
+	f.Note = Wrapped("")
 	return Row(name, f, f.Note)
 }
 
 // Row is FieldRow for any object; note may be nil.
-func Row(name string, o fyne.CanvasObject, note *widget.Label) fyne.CanvasObject {
+func Row(name string, o fyne.CanvasObject, note *Text) fyne.CanvasObject {
 	label := widget.NewLabel(name)
 	label.Wrapping = fyne.TextWrapWord
 	label.Resize(fyne.NewSize(rowName*Scale(), label.MinSize().Height))
@@ -35,11 +34,11 @@ type rowLayout struct{ stacked bool }
 
 const rowName = 128 // width of the names, at scale 1
 
-func (l *rowLayout) note(objects []fyne.CanvasObject) *widget.Label {
+func (l *rowLayout) note(objects []fyne.CanvasObject) *Text {
 	if len(objects) < 3 {
 		return nil
 	}
-	if n := objects[2].(*widget.Label); n.Text != "" {
+	if n := objects[2].(*Text); n.Text != "" {
 		return n
 	}
 	return nil

@@ -28,11 +28,11 @@ type cyclesTab struct {
 	which    *choice
 	from, to *widgets.Field
 	span     *fyne.Container
-	spread   *widget.Label
+	spread   *widgets.Text
 	states   *widgets.Figure
 	stack    *widgets.Picture
 	table    *widgets.Table
-	none     *widget.Label
+	none     *widgets.Text
 }
 
 // The parts of a recording that may make the duty.
