@@ -35,7 +35,7 @@ func missingValue(p *patient) *Cure {
 		return &Cure{Name: "Type " + circuit.InSentence(q.Title), Field: q.Key}
 	}
 	for _, word := range q.Choices {
-		c := p.set("Set hold: "+word, "hold", word)
+		c := p.set("Let the "+word+" hold it", "hold", word)
 		c.Told = fmt.Sprintf("%s is held by the %s; correct that if the machine has something else.", p.Block, word)
 		if mended := *p.file; c.Mend(&mended) == nil && !p.stopsAt(&mended) {
 			return c
@@ -73,17 +73,17 @@ func needsNoValue(p *patient) *Cure {
 	if q == nil || q.Need {
 		return nil
 	}
-	return &Cure{Name: fmt.Sprintf("Drop %s of %s", circuit.InSentence(q.Title), p.Block), Mend: func(f *audit.File) error { return f.Drop(p.target(p.Parameter)) }}
+	return &Cure{Name: fmt.Sprintf("Take out of %s: %s", p.Block, circuit.InSentence(q.Title)), Mend: func(f *audit.File) error { return f.Drop(p.target(p.Parameter)) }}
 }
 
-func heldByValve(p *patient) *Cure { return p.set("Set hold of "+p.Block+": valve", "hold", "valve") }
+func heldByValve(p *patient) *Cure { return p.set("Let the valve hold "+p.Block, "hold", "valve") }
 
 // heldOtherwise takes what the first actuator of the same axis is held by.
 func heldOtherwise(p *patient) *Cure {
 	for i := range p.e.Blocks {
 		b := &p.e.Blocks[i]
 		if b.ID != p.Block && b.Word("axis") == p.b.Word("axis") && b.Word("hold") != "" {
-			return p.set(fmt.Sprintf("Set hold of %s: %s", p.Block, b.Word("hold")), "hold", b.Word("hold"))
+			return p.set(fmt.Sprintf("Let the %s hold %s", b.Word("hold"), p.Block), "hold", b.Word("hold"))
 		}
 	}
 	return nil
@@ -108,7 +108,7 @@ func reliefTooLow(p *patient) *Cure {
 		return nil
 	}
 	text := settingText(circuit.ReliefAbove(held) + now.SI - crack)
-	return &Cure{Name: fmt.Sprintf("Raise %s of %s to %s", p.Parameter, p.Block, text),
+	return &Cure{Name: fmt.Sprintf("Raise %s: %s %s", p.Block, circuit.InSentence(circuit.KindNamed(p.b.Kind).Param(p.Parameter).Title), text),
 		Told: p.Block + " is raised on paper only: no relief valve of a machine may be set so before its ratings and its maker permit it.",
 		Mend: func(f *audit.File) error { return f.Set(p.target(p.Parameter), text) }}
 }
