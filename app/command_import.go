@@ -288,7 +288,7 @@ func printRecording(w io.Writer, rec *logger.Recording) {
 		for _, x := range v {
 			low, high, sum = math.Min(low, x), math.Max(high, x), sum+x
 		}
-		rows = append(rows, []string{s.Column, show(low, s.Dim) + " to " + show(high, s.Dim) + ", mean " + show(sum/float64(len(v)), s.Dim)})
+		rows = append(rows, []string{s.Column, units.Range(show(low, s.Dim), show(high, s.Dim)) + ", mean " + show(sum/float64(len(v)), s.Dim)})
 	}
 	table(w, rows)
 	heading(w, "Found and done")

@@ -62,7 +62,7 @@ func (l *law) values(s *Solution, p printer) string {
 		case q.Type == circuit.Number && words[q.Symbol]:
 			numbers = append(numbers, q.Symbol+" = "+row.Value+" ("+row.Origin+spread(row)+")")
 		case q.Type == circuit.Choice:
-			choices = append(choices, lowerCase(q.Title)+": "+row.Value+" ("+row.Origin+")")
+			choices = append(choices, circuit.InSentence(q.Title)+": "+row.Value+" ("+row.Origin+")")
 		}
 	}
 	if words["μ"] {
@@ -82,20 +82,13 @@ func (l *law) values(s *Solution, p printer) string {
 func spread(r ParameterRow) string {
 	switch {
 	case r.Low != "" && r.High != "":
-		return ", " + r.Low + " to " + r.High
+		return ", " + units.Range(r.Low, r.High)
 	case r.Low != "":
 		return ", from " + r.Low
 	case r.High != "":
 		return ", up to " + r.High
 	}
 	return ""
-}
-
-func lowerCase(title string) string {
-	if r := []rune(title); len(r) > 1 && !unicode.IsUpper(r[1]) {
-		return string(unicode.ToLower(r[0])) + string(r[1:])
-	}
-	return title
 }
 
 // symbols are the words of a formula.

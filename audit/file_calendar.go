@@ -302,7 +302,7 @@ func (r *reader) weekAgainstYear() {
 		return
 	}
 	hours := func(t float64) string { return units.Number(t/units.Hour, 4) + " h" }
-	r.says(scope{where: "heat"}, circuit.Warns, child(r.file.root, "heat"), fmt.Sprintf("%s a week (shift_hours, shift_days) make %s in %s weeks, but the duties last %s a year; mend one, or write a shift calendar, which gives both",
+	r.says(scope{where: "heat"}, circuit.Warns, child(r.file.root, "heat"), fmt.Sprintf("%s a week by hours a day and days a week (shift_hours, shift_days of heat) make %s in %s weeks, but the duties last %s a year; mend one, or write a shift calendar, which gives both",
 		hours(week), hours(week*calendar.MostWeeks), units.Number(calendar.MostWeeks, 3), hours(year)))
 }
 

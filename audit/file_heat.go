@@ -62,11 +62,11 @@ func (r *reader) heat(outer scope, n *yaml.Node) HeatSection {
 func (r *reader) heatFits(s scope, f map[string]entry, h HeatSection) {
 	_, rate := h.Values["cooler_rate"]
 	if rate && len(h.Points) > 0 {
-		r.bad(s, f["cooler_points"].value, "cooler_points", "and cooler_rate both say what the cooler takes; keep one")
+		r.bad(s, f["cooler_points"].value, "cooler_points", "capacity by flow and capacity (cooler_rate) both say what the cooler takes; keep one")
 	}
 	opens, has := h.Values["thermostat_opens"]
 	if full, ok := h.Values["thermostat_full"]; ok && has && full.SI < opens.SI {
-		r.bad(s, f["thermostat_full"].value, "thermostat_full", "is %s, below thermostat_opens %s", full.Text, opens.Text)
+		r.bad(s, f["thermostat_full"].value, "thermostat_full", "fully open at %s, below the %s at which it opens (thermostat_opens)", full.Text, opens.Text)
 	}
 	whole := func(key string, most float64) {
 		if v, ok := h.Values[key]; ok && (v.SI != float64(int(v.SI)) || v.SI < 1 || v.SI > most) {

@@ -67,7 +67,7 @@ func (o *Oil) law() (machines.Oil, error) {
 	m := gradeNumber.FindStringSubmatch(o.Grade)
 	switch {
 	case o.HasViscosity100 && o.HasVI:
-		return oil, errors.New("oil: viscosity_100 and viscosity_index are both given; keep one")
+		return oil, errors.New("oil: viscosity at 100 °C and viscosity index (viscosity_100, viscosity_index) are both given; keep one")
 	case o.HasViscosity40:
 		oil = machines.NewOil(o.Viscosity40.SI, 0)
 	case m != nil:
@@ -81,7 +81,7 @@ func (o *Oil) law() (machines.Oil, error) {
 			}
 		}
 	case o.Grade != "":
-		return oil, fmt.Errorf("oil: grade %q is not an ISO VG grade; write one such as ISO VG 46 or ISO VG 46 HV, or give viscosity_40 and viscosity_100", o.Grade)
+		return oil, fmt.Errorf("oil: grade %q is not an ISO VG grade; write one such as ISO VG 46 or ISO VG 46 HV, or give the viscosities at 40 and 100 °C (viscosity_40, viscosity_100)", o.Grade)
 	default:
 		return oil, errors.New("oil: give a grade such as ISO VG 46, or the viscosity at the working temperature")
 	}
@@ -93,7 +93,7 @@ func (o *Oil) law() (machines.Oil, error) {
 			return oil, fmt.Errorf("oil: %w", err)
 		}
 	case o.HasViscosity40:
-		return oil, errors.New("oil: viscosity_40 needs viscosity_100 or viscosity_index beside it")
+		return oil, errors.New("oil: the viscosity at 40 °C (viscosity_40) needs that at 100 °C or a viscosity index beside it (viscosity_100, viscosity_index)")
 	}
 	if o.HasDensity && !o.HasViscosity {
 		oil.Density15 = o.Density.SI

@@ -206,7 +206,7 @@ func TestOilFaults(t *testing.T) {
 		"{temperature: 50 C, viscosity: 40 mPa s}":                                       "density at the working temperature is missing",
 		"{grade: ISO VG 46}":                                                             "temperature is missing",
 		"{grade: goose fat, temperature: 50 C}":                                          `grade "goose fat" is not an ISO VG grade`,
-		"{viscosity_40: 46 mm2/s, temperature: 50 C}":                                    "viscosity_40 needs viscosity_100",
+		"{viscosity_40: 46 mm2/s, temperature: 50 C}":                                    "(viscosity_40) needs that at 100 °C or a viscosity index",
 		"{viscosity_40: 8 mm2/s, viscosity_100: 46 mm2/s, temperature: 50 C}":            "must be above that at 100 C",
 		"{grade: VG 46, viscosity_100: 7 mm2/s, viscosity_index: 99, temperature: 50 C}": "keep one",
 		"{grade: VG 46, viscosity_index: 900, temperature: 50 C}":                        "viscosity index is 900, must be 0 to 400",

@@ -118,7 +118,7 @@ func (s *Solution) unitPrice(c *CircuitRun) float64 {
 func (s *Solution) fuelRemarks(c *CircuitRun) []circuit.Finding {
 	if burns(c.Circuit) && known(s.Tariff.Price) && !known(s.Tariff.Fuel.Price) {
 		return []circuit.Finding{{Level: circuit.Note, Circuit: c.Circuit.Name,
-			Text: "an engine burns fuel, whose price is not given: no money is named for this circuit. Give energy: {fuel_price: ...}, by the litre or kilogram"}}
+			Text: "an engine burns fuel, whose price is not given: no money is named for this circuit. Give its price (energy: {fuel_price: ...}), by the litre or kilogram"}}
 	}
 	return nil
 }

@@ -34,7 +34,7 @@ type Heat struct {
 // than the air: then no air cooler does it. The result is NaN in both cases.
 func CoolerRate(heat, oil, air float64) (float64, error) {
 	if math.IsNaN(oil) || math.IsNaN(air) {
-		return math.NaN(), errors.New("no cooler can be named without the oil temperature and the air temperature; give both in the file")
+		return math.NaN(), errors.New("no cooler can be named without the oil temperature and the air temperature; give both (oil.temperature, air.temperature)")
 	}
 	if oil <= air {
 		c, _ := units.ParseUnit("C", units.Temperature)

@@ -68,9 +68,9 @@ func (s *Solution) warmthRemarks(c *CircuitRun) []circuit.Finding {
 	switch d := h.Section.Drawn; {
 	case d.Block == "":
 	case h.Plant.Cooler.None():
-		say(circuit.Note, "%s is drawn, but the section heat says of no cooler what it takes; give cooler and cooler_rate, or nothing is cooled here", d.Block)
+		say(circuit.Note, "%s is drawn, but nothing says what a cooler takes; give cooler and capacity (cooler, cooler_rate of heat), or nothing is cooled here", d.Block)
 	default:
-		say(circuit.Note, "the cooler stands where %s is drawn (%s); cooler_place in the section heat would say otherwise", d.Block, d.Place)
+		say(circuit.Note, "the cooler stands where %s is drawn (%s); its place among the heat values (cooler_place of heat) would say otherwise", d.Block, d.Place)
 	}
 	if dry := h.Dry(); len(dry) > 0 {
 		say(circuit.Note, "no oil passes the cooler (%s) in %s: nothing is cooled while that goes on", h.Section.Word("cooler_place"), circuit.Names(dry))

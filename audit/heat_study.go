@@ -99,15 +99,15 @@ func (h *HeatStudy) missing(s *Solution) string {
 	_, loop := sec.Values["loop_flow"]
 	switch {
 	case !volume:
-		return "heat: no oil temperature can be worked out without the oil in the tank; give tank_volume"
+		return "heat: no oil temperature can be worked out without the oil in the tank; give it (tank_volume)"
 	case math.IsNaN(s.Air):
 		return "heat: no oil temperature can be worked out without the temperature of the air; give air: {temperature: ...}"
 	case cooled && sec.stated() == 0:
-		return "heat: the cooler has no capacity; give cooler_rate or cooler_points, or cooler: none"
+		return "heat: the cooler has no capacity; give it (cooler_rate), or capacity by flow (cooler_points), or no cooler (cooler: none)"
 	case sec.Word("cooler") == waterCooler && !water:
-		return "heat: a water cooler needs water_temperature, at which the water enters"
+		return "heat: a water cooler needs the temperature at which the water enters (water_temperature)"
 	case sec.Word("cooler_place") == placeOffLine && !loop:
-		return "heat: an off-line cooler needs loop_flow, the flow of the pump of its loop"
+		return "heat: an off-line cooler needs the flow of the pump of its loop (loop_flow)"
 	}
 	return ""
 }

@@ -1,7 +1,6 @@
 package audit
 
 import (
-	"fmt"
 	"math"
 
 	"barlitre/machines/units"
@@ -96,11 +95,11 @@ func (p Payback) String() string {
 	hasRange := !math.IsNaN(p.Low) && !math.IsNaN(p.High)
 	switch {
 	case !math.IsNaN(p.Likely) && hasRange:
-		return fmt.Sprintf("%s years (%s to %s)", years(p.Likely), years(p.Low), years(p.High))
+		return units.Around(years(p.Likely), " years", years(p.Low), years(p.High))
 	case !math.IsNaN(p.Likely):
 		return years(p.Likely) + " years"
 	case hasRange:
-		return fmt.Sprintf("%s to %s years", years(p.Low), years(p.High))
+		return units.Range(years(p.Low), years(p.High)) + " years"
 	case !math.IsNaN(p.Low):
 		return "at least " + years(p.Low) + " years"
 	case !math.IsNaN(p.High):

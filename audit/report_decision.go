@@ -3,6 +3,7 @@ package audit
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"barlitre/machines/units"
 )
@@ -68,10 +69,11 @@ func paybackText(p Payback) string {
 	if p.None != "" {
 		return p.None
 	}
-	if p.Low < p.High {
-		return "simple payback " + p.String() + ", the range by its cost alone"
+	text := "simple payback " + p.String()
+	if strings.Contains(text, " to ") {
+		text += ", the range by its cost alone"
 	}
-	return "simple payback " + p.String()
+	return text
 }
 
 // warnings lists what stands against a verdict.
@@ -191,7 +193,7 @@ func (s *Solution) outcome(p printer, c *Comparison) []Figure {
 	cost := c.Proposal.Cost
 	calc := Calculation{"n = cost / money saved a year", "", "without interest, price changes or upkeep; cost typed by the user"}
 	if cost.Given {
-		calc.Numbers = fmt.Sprintf("%s (%s to %s) / %s", p.money(cost.Likely), p.money(cost.Low), p.money(cost.High), p.money(c.MoneySaved))
+		calc.Numbers = units.Around(p.money(cost.Likely), "", p.money(cost.Low), p.money(cost.High)) + " / " + p.money(c.MoneySaved)
 		if cost.Note != "" {
 			calc.Source += " (" + cost.Note + ")"
 		}

@@ -43,7 +43,7 @@ func serviceTable(p printer, c *CircuitRun) Table {
 	row("years to its endurance", func(s *Service) string { return numberOr(s.Life, 3) })
 	row("mean loss, likely", func(s *Service) string { return orDash(s.MeanLost[1], units.Power, p) })
 	row("mean loss, low to high", func(s *Service) string {
-		return orDash(s.MeanLost[0], units.Power, p) + " to " + orDash(s.MeanLost[2], units.Power, p)
+		return units.Range(orDash(s.MeanLost[0], units.Power, p), orDash(s.MeanLost[2], units.Power, p))
 	})
 	row("the swashplate machine beside it has", func(s *Service) string {
 		if s.Fitted {
@@ -101,8 +101,8 @@ func (s *Service) Verdict(system units.System) string {
 	case gone < 0:
 		return text + " It has no advantage even without idle loss."
 	default:
-		return text + fmt.Sprintf(" The advantage is gone at an idle loss of %s; likely is %s, %s to %s.", p.in(gone, units.Pressure, 3),
-			p.in(s.Idle[1].Loss, units.Pressure, 3), p.in(s.Idle[0].Loss, units.Pressure, 3), p.in(s.Idle[2].Loss, units.Pressure, 3))
+		return text + fmt.Sprintf(" The advantage is gone at an idle loss of %s; likely is %s.", p.in(gone, units.Pressure, 3),
+			units.Around(p.in(s.Idle[1].Loss, units.Pressure, 3), "", p.in(s.Idle[0].Loss, units.Pressure, 3), p.in(s.Idle[2].Loss, units.Pressure, 3)))
 	}
 }
 

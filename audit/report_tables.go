@@ -38,7 +38,7 @@ func parameters(c *circuit.Circuit) []ParameterRow {
 func parameter(k *circuit.Kind, b *circuit.Block, p *circuit.Param) (ParameterRow, bool) {
 	row := ParameterRow{Block: b.ID, Kind: k.Title, Name: p.Title, Symbol: p.Symbol}
 	if p.Type != circuit.Number {
-		row.Value = k.WordOf(b, p.Key)
+		row.Value = p.NameOf(k.WordOf(b, p.Key))
 		row.Default = b.Word(p.Key) == ""
 		row.Origin = "chosen"
 		if row.Default {

@@ -22,7 +22,7 @@ var wrongCircuits = map[string]struct{ block, text string }{
 	"nothing_follows":             {"V1", "V1 has to follow axis ram"},
 	"open_return":                 {"F1", "port B (clean side) is not connected"},
 	"port_in_two_lines":           {"V1", "write them as one line, or put a junction between"},
-	"relief_without_setting":      {"RV1", "give its setting: set (at set_flow) or crack"},
+	"relief_without_setting":      {"RV1", "give its setting: the pressure at a flow (set, set_flow) or where it begins to open (crack)"},
 	"relief_without_tank":         {"RV1", "port T (outlet) is not connected"},
 	"rod_above_bore":              {"C1", "is not below the bore"},
 	"rod_side_plugged":            {"C1", "it must move, but the oil at its port B has no way out"},

@@ -2,6 +2,7 @@ package audit
 
 import (
 	"math"
+	"strings"
 	"testing"
 
 	"barlitre/audit/thermal"
@@ -141,6 +142,15 @@ func TestPaybackEdges(t *testing.T) {
 		}
 	}
 	nan := math.NaN()
+	for cost, want := range map[CostRange]string{
+		{Low: 99.9, Likely: 100, High: 100.2, Given: true}: "2.0 years",
+		{Low: 100, Likely: 100, High: 110, Given: true}:    "2.0 years (2.0 to 2.2)",
+	} {
+		p := SimplePayback(cost, 50)
+		if s, told := p.String(), paybackText(p); s != want || strings.Contains(told, "range") != strings.Contains(want, " to ") {
+			t.Errorf("a cost of %v pays back in %q, told as %q", cost, s, told)
+		}
+	}
 	if s := SimplePayback(CostRange{Low: nan, Likely: 100, High: nan, Given: true}, 50).String(); s != "2.0 years" {
 		t.Errorf("likely alone: %q", s)
 	}

@@ -36,7 +36,7 @@ var accumulatorKind = &Kind{
 	check: func(_ *Kind, b *Block, bad func(Level, string, string, ...any)) {
 		_, n := b.Values["exponent"]
 		if _, tau := b.Values["thermal_time_constant"]; n && tau {
-			bad(Stops, "exponent", "exponent and thermal_time_constant are both given, two laws of one gas; keep one of them")
+			bad(Stops, "exponent", "exponent and thermal time constant are both given (exponent, thermal_time_constant), two laws of one gas; keep one of them")
 		}
 	},
 	build: func(k *compiler, b *Block) model {

@@ -18,8 +18,8 @@ var counterbalanceKind = &Kind{
 		Param{Key: "setting", Title: "Setting", Symbol: "ps", Dim: units.Pressure, Need: true, Above: true, Max: 1000e5, Text: "pressure at C that opens it without pilot; usually 1.3 times the highest load pressure"},
 		Param{Key: "pilot_ratio", Title: "Pilot ratio", Symbol: "r", Dim: units.Ratio, Default: "4.5", Origin: Assumed, Source: "common practice 3 to 10", Above: true, Max: 50, Text: "pilot area over the area under the load pressure"},
 		Param{Key: "range", Title: "Opening range", Symbol: "Δpb", Dim: units.Pressure, Default: "20 bar", Origin: Assumed, Source: "from closed to fully open, common practice", Above: true, Max: 200e5, Text: "rise of pC + r·pX from closed to fully open"},
-		Param{Key: "back_flow", Title: "Nominal flow out", Symbol: "q2", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "from C to V, fully open, at back_drop"},
-		Param{Key: "back_drop", Title: "Nominal drop out", Symbol: "Δp2", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "common practice", Above: true, Max: 200e5, Text: "at back_flow"},
+		Param{Key: "back_flow", Title: "Nominal flow out", Symbol: "q2", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "from C to V, fully open, at its nominal drop"},
+		Param{Key: "back_drop", Title: "Nominal drop out", Symbol: "Δp2", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "common practice", Above: true, Max: 200e5, Text: "at its nominal flow"},
 	),
 	Losses: []LossKind{{"braking of the load", ToOil, "P = Δp·q"}},
 	Equations: []Equation{

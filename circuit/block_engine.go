@@ -25,8 +25,8 @@ var engineKind = &Kind{
 		{Key: "min_speed", Title: "Lowest speed", Symbol: "n1", Dim: units.AngularSpeed, Default: "700 rpm", Origin: Assumed, Source: "common practice, no source", Max: 1000, Text: "below it the engine stalls"},
 		{Key: "idle_share", Title: "Fuel without load", Symbol: "k", Dim: units.Ratio, Default: "0.4", Origin: Assumed, Source: "38 % efficiency at full load, common practice, no source; from its fuel consumption at two loads it follows", Max: 5, Text: "fuel power without load at the set speed, as share of the rated power"},
 		{Key: "slope", Title: "Slope of the Willans line", Symbol: "s", Dim: units.Ratio, Default: "2.2", Origin: Assumed, Source: "38 % efficiency at full load, common practice, no source", Min: 1, Max: 10, Text: "fuel power for each further watt at the shaft"},
-		{Key: "idle_speed", Title: "Soft idle speed", Symbol: "n0", Dim: units.AngularSpeed, Above: true, Max: 1000, Text: "its governor holds this speed while every axis stands, unless pump_at_rest stops it"},
-		{Key: "start_idling", Title: "Fuel of a start", Symbol: "t0", Dim: units.Time, Default: "10 s", Origin: Assumed, Source: "a start takes as much fuel as so long idling, from memory of idling studies", Max: 600, Text: "of an engine that pump_at_rest stops: as idling without load at its lowest speed for this time"},
+		{Key: "idle_speed", Title: "Soft idle speed", Symbol: "n0", Dim: units.AngularSpeed, Above: true, Max: 1000, Text: "its governor holds this speed while every axis stands, unless pumps are switched off at rest"},
+		{Key: "start_idling", Title: "Fuel of a start", Symbol: "t0", Dim: units.Time, Default: "10 s", Origin: Assumed, Source: "a start takes as much fuel as so long idling, from memory of idling studies", Max: 600, Text: "of an engine that is switched off at rest: as idling without load at its lowest speed for this time"},
 	}, map[Section][]string{
 		Governing: {"droop", "idle_speed"},
 		LossBasis: {"idle_share", "slope", "start_idling"},

@@ -32,7 +32,7 @@ var orificeKind = &Kind{
 		_, n := b.Values["nominal_flow"]
 		_, d := b.Values["diameter"]
 		if n == d {
-			bad(Stops, "nominal_flow", "give its size: either nominal_flow or diameter")
+			bad(Stops, "nominal_flow", "give its size: either nominal flow (nominal_flow) or diameter")
 		}
 	},
 	build: func(k *compiler, b *Block) model {

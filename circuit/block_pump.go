@@ -15,10 +15,11 @@ var pumpKind = &Kind{
 		{Name: "S", Type: Oil, Text: "suction"},
 		{Name: "P", Type: Oil, Text: "outlet"},
 		{Name: "D", Type: Oil, Optional: true, Text: "case drain; unconnected it goes to tank"},
-		{Name: "LS", Type: Pilot, Optional: true, Text: "load pressure signal; with negative_flow its pilot pressure"},
+		{Name: "LS", Type: Pilot, Optional: true, Text: "load pressure signal; with control negative flow its pilot pressure"},
 	},
 	Params: append(machineParams("0.5"), Governing.of([]Param{
-		{Key: "control", Title: "Control", Type: Choice, Default: "fixed", Choices: []string{"fixed", "pressure", "load_sensing", "negative_flow", "pq", "power", "commanded"}, Text: "what sets the displacement"},
+		{Key: "control", Title: "Control", Type: Choice, Default: "fixed", Choices: []string{"fixed", "pressure", "load_sensing", "negative_flow", "pq", "power", "commanded"},
+			Called: map[string]string{"fixed": "fixed displacement", "pressure": "constant pressure", "pq": "p/Q control", "power": "constant power"}, Text: "what sets the displacement"},
 		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its displacement is found from the motion of this axis"},
 		{Key: "both_directions", Title: "Over centre", Type: Choice, Default: "no", Choices: []string{"no", "yes"}, Text: "the setting may go below zero"},
 		{Key: "setting", Title: "Setting", Symbol: "e", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "full displacement", Min: -1, Max: 1, Text: "of a commanded pump without a track"},
@@ -28,7 +29,7 @@ var pumpKind = &Kind{
 		{Key: "reference_speed", Title: "Reference speed", Symbol: "nL", Dim: units.AngularSpeed, Above: true, Max: 2000, Text: "for power limit and set flow; default: the speed of its motor or engine"},
 		{Key: "unloaded_pressure", Title: "Unloaded pressure", Symbol: "pu", Dim: units.Pressure, Max: 1000e5, Text: "set pressure while unloaded at rest"},
 		{Key: "margin", Title: "Margin", Symbol: "Δpm", Dim: units.Pressure, Default: "20 bar", Origin: Assumed, Source: "load-sensing margin, common practice 14 to 25 bar", Above: true, Max: 200e5, Text: "of a load-sensing pump, above the load pressure"},
-		{Key: "signal_start", Title: "Strokes back from", Symbol: "p1", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "excavator pumps, common practice, no source", Max: 200e5, Text: "pilot pressure up to which a negative_flow pump stays at full setting"},
+		{Key: "signal_start", Title: "Strokes back from", Symbol: "p1", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "excavator pumps, common practice, no source", Max: 200e5, Text: "pilot pressure up to which a pump of negative flow stays at full setting"},
 		{Key: "signal_end", Title: "Stroked back at", Symbol: "p2", Dim: units.Pressure, Default: "30 bar", Origin: Assumed, Source: "excavator pumps, common practice, no source", Above: true, Max: 200e5, Text: "pilot pressure from which it stands at its lowest setting"},
 		{Key: "min_setting", Title: "Lowest setting", Symbol: "e1", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "strokes back to zero", Max: 1, Text: "stop of a pump whose displacement a pressure sets"},
 	}...)...),
@@ -36,7 +37,7 @@ var pumpKind = &Kind{
 	Equations: append(machineEquations, Equation{"pressure control: p = ps while e1 < e < 1; load sensing: p = pLS + Δpm while e1 < e < 1", "ideal regulator, complementarity of set point and stop"},
 		Equation{"pq: e = qs/(D·nL) while p < ps, then p = ps", "ideal regulator; the set flow is a displacement, slip is not made up for"},
 		Equation{"power limit: e is cut back so that e·D·Δp + friction <= PL/nL", "torque limiter: an ideal hyperbola, complementarity with the control"},
-		Equation{"negative_flow: e = clip(1 − (1 − e1)·(pLS − p1)/(p2 − p1), e1, 1)", "linear regulator, no hysteresis; common practice, no source"}),
+		Equation{"negative flow: e = clip(1 − (1 − e1)·(pLS − p1)/(p2 − p1), e1, 1)", "linear regulator, no hysteresis; common practice, no source"}),
 	Rating: "rating",
 	Symbol: func(b *Block) string {
 		switch {
@@ -62,22 +63,22 @@ var pumpKind = &Kind{
 		checkMachine(k, b, bad)
 		control := k.WordOf(b, "control")
 		if follows(b) != "" && b.Word("control") != "" {
-			bad(Stops, "control", "it follows an axis and has a control of its own; keep one of `follows` and `control`")
+			bad(Stops, "control", "it follows an axis and has a control of its own; keep one of the two (follows, control)")
 		}
 		if _, ok := b.Values["set_pressure"]; control == "pressure" && !ok {
-			bad(Stops, "set_pressure", "a pressure-compensated pump needs its set_pressure")
+			bad(Stops, "set_pressure", "a pressure-compensated pump needs its set pressure (set_pressure)")
 		}
 		_, limited := b.Values["power_limit"]
 		switch {
 		case limited && control == "fixed" && follows(b) == "":
-			bad(Stops, "power_limit", "a fixed pump has no displacement to cut back; set control: power, or drop the limit")
+			bad(Stops, "power_limit", "a fixed pump has no displacement to cut back; let its control be constant power (control: power), or drop the limit")
 		case !limited && control == "power":
-			bad(Stops, "power_limit", "with control: power it needs its power_limit")
+			bad(Stops, "power_limit", "a pump of constant power (control: power) needs its power limit (power_limit)")
 		}
 		p1, _, _ := k.Value(b, "signal_start")
 		p2, _, _ := k.Value(b, "signal_end")
 		if control == "negative_flow" && p2.SI <= p1.SI {
-			bad(Stops, "signal_end", "signal_end is not above signal_start; a pump strokes back as its pilot pressure rises")
+			bad(Stops, "signal_end", "it is stroked back (signal_end) at no more pressure than where its stroke begins to fall (signal_start); a pump strokes back as its pilot pressure rises")
 		}
 	},
 	build: buildPump,

@@ -15,8 +15,8 @@ var reliefKind = &Kind{
 	},
 	Params: []Param{
 		{Key: "crack", Title: "Cracks at", Symbol: "pc", Dim: units.Pressure, Above: true, Max: 1000e5, Text: "pressure drop at which it begins to open"},
-		{Key: "set", Title: "Set to", Symbol: "ps", Dim: units.Pressure, Above: true, Max: 1000e5, Text: "pressure drop at set_flow"},
-		{Key: "set_flow", Title: "Set at flow", Symbol: "qs", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "flow at which a name-plate setting is usually stated; ask", Above: true, Max: 1, Text: "flow at which `set` holds"},
+		{Key: "set", Title: "Set to", Symbol: "ps", Dim: units.Pressure, Above: true, Max: 1000e5, Text: "pressure drop at the flow of its setting"},
+		{Key: "set_flow", Title: "Set at flow", Symbol: "qs", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "flow at which a name-plate setting is usually stated; ask", Above: true, Max: 1, Text: "flow at which the setting holds"},
 		{Key: "override", Title: "Override", Symbol: "R", Dim: units.FlowResistance, Default: "10 bar per 100 L/min", Origin: Assumed, Source: "pilot-operated valve, common practice 3 to 12 % of the setting", Max: 1e12, Text: "pressure rise by flow"},
 		{Key: "vented", Title: "Vented pressure", Symbol: "pv", Dim: units.Pressure, Max: 100e5, Text: "opening pressure while vented"},
 	},
@@ -28,15 +28,15 @@ var reliefKind = &Kind{
 		_, set := b.Values["set"]
 		switch {
 		case crack && set:
-			bad(Stops, "set", "crack and set are both given; keep one of them")
+			bad(Stops, "set", "both are given, its setting at a flow (set) and where it begins to open (crack); keep one of them")
 		case !crack && !set:
-			bad(Stops, "set", "give its setting: set (at set_flow) or crack")
+			bad(Stops, "set", "give its setting: the pressure at a flow (set, set_flow) or where it begins to open (crack)")
 		case set:
 			s, _, _ := k.Value(b, "set")
 			f, _, _ := k.Value(b, "set_flow")
 			r, _, _ := k.Value(b, "override")
 			if s.SI-f.SI*r.SI <= 0 {
-				bad(Stops, "override", "with this override it would open below zero; lower the override or set_flow")
+				bad(Stops, "override", "with this override it would open below zero; lower the override or the flow of its setting (set_flow)")
 			}
 		}
 	},

@@ -62,14 +62,14 @@ func switchedParams() []Param {
 		{Key: "endurance", Title: "Endurance of a valve", Symbol: "Ne", Dim: units.Count, Default: "1e9", Origin: Assumed, Source: "a figure often stated for such valves, from memory; its maker's figure comes first", Above: true, Max: 1e15, Text: "valve events that one valve stands"},
 		{Key: "low_flow", Title: "Low-flow limit", Symbol: "xl", Dim: units.Ratio, Above: true, Max: 1, Text: "fraction below which it should not work for long. Default: one working stroke a turn"},
 		{Key: "outlet_volume", Title: "Oil volume at the outlet", Symbol: "VP", Dim: units.Volume, Above: true, Max: 100, Text: "lines and actuator on the service; when given, the pressure ripple is worked out"},
-		{Key: "control", Title: "Control", Type: Choice, Default: "commanded", Choices: []string{"commanded", "pressure", "load_sensing"}, Text: "what sets the fraction"},
+		{Key: "control", Title: "Control", Type: Choice, Default: "commanded", Choices: []string{"commanded", "pressure", "load_sensing"}, Called: map[string]string{"pressure": "constant pressure"}, Text: "what sets the fraction"},
 		{Key: "follows", Title: "Follows axis", Type: AxisRef, Text: "its fraction is found from the motion of this axis"},
 		{Key: "both_directions", Title: "Pump and motor", Type: Choice, Default: "yes", Choices: []string{"yes", "no"}, Text: "the fraction may go below zero: it takes oil from its outlet and drives the shaft"},
 		{Key: "setting", Title: "Fraction", Symbol: "x", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "every cylinder works", Min: -1, Max: 1, Text: "of a commanded service without a track"},
-		{Key: "set_pressure", Title: "Set pressure", Symbol: "ps", Dim: units.Pressure, Above: true, Max: 1000e5, Text: "held at P with control: pressure"},
+		{Key: "set_pressure", Title: "Set pressure", Symbol: "ps", Dim: units.Pressure, Above: true, Max: 1000e5, Text: "held at P with control constant pressure"},
 		{Key: "unloaded_pressure", Title: "Unloaded pressure", Symbol: "pu", Dim: units.Pressure, Max: 1000e5, Text: "set pressure while unloaded at rest"},
-		{Key: "margin", Title: "Margin", Symbol: "Δpm", Dim: units.Pressure, Default: "20 bar", Origin: Assumed, Source: "load-sensing margin, common practice 14 to 25 bar", Above: true, Max: 200e5, Text: "with control: load_sensing, above the load pressure"},
-		{Key: "min_setting", Title: "Lowest fraction", Symbol: "x1", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "it only delivers", Min: -1, Max: 1, Text: "with control: pressure or load_sensing; −1 lets it take oil back as a motor while the pressure is above what it holds"},
+		{Key: "margin", Title: "Margin", Symbol: "Δpm", Dim: units.Pressure, Default: "20 bar", Origin: Assumed, Source: "load-sensing margin, common practice 14 to 25 bar", Above: true, Max: 200e5, Text: "with control load sensing, above the load pressure"},
+		{Key: "min_setting", Title: "Lowest fraction", Symbol: "x1", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "it only delivers", Min: -1, Max: 1, Text: "with control constant pressure or load sensing; −1 lets it take oil back as a motor while the pressure is above what it holds"},
 		{Key: "points", Title: "Measured points of another machine", Type: FileRef, Text: "CSV file beside the audit file with points of a swashplate machine to compare with: speed, pressure difference, flow, torque and, if it varies, displacement. Without it that is an axial piston machine of the best point of its family"},
 		{Key: "points_displacement", Title: "Displacement of that machine", Dim: units.DisplacementPerRev, Above: true, Max: 0.02, Text: "geometric, at full setting; default: as this one"},
 		{Key: "points_viscosity", Title: "Viscosity of the points", Dim: units.DynamicViscosity, Default: "26 mPa s", Origin: Assumed, Source: "ISO VG 46 at 50 C", Above: true, Max: 10, Text: "of the oil while they were measured, where the file has no such column"},
@@ -97,10 +97,10 @@ func switchedLossParams() []Param {
 
 func checkSwitched(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 	if follows(b) != "" && b.Word("control") != "" {
-		bad(Stops, "control", "it follows an axis and has a control of its own; keep one of `follows` and `control`")
+		bad(Stops, "control", "it follows an axis and has a control of its own; keep one of the two (follows, control)")
 	}
 	if k.WordOf(b, "control") == "pressure" && !hasValue(b, "set_pressure") {
-		bad(Stops, "set_pressure", "a service that holds a pressure needs its set_pressure")
+		bad(Stops, "set_pressure", "a service that holds a pressure needs its set pressure (set_pressure)")
 	}
 	if law, ok := SwitchedLaw(b); !ok && hasValue(b, "displacement") {
 		if err := law.Check(); err != nil {
@@ -108,7 +108,7 @@ func checkSwitched(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 		}
 	}
 	if b.Word("points") == "" && (hasValue(b, "points_displacement") || hasValue(b, "points_viscosity")) {
-		bad(Stops, "points", "points_displacement and points_viscosity belong to measured points; name their file, or drop them")
+		bad(Stops, "points", "displacement and viscosity of the points (points_displacement, points_viscosity) belong to measured points; name their file, or drop them")
 	}
 	if b.Fit != nil {
 		for _, w := range b.Fit.Warnings {

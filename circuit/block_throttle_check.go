@@ -17,8 +17,8 @@ var throttleCheckKind = &Kind{
 		{Key: "nominal_flow", Title: "Nominal flow", Symbol: "qN", Dim: units.Flow, Need: true, Above: true, Max: 10, Text: "of the throttle as it is set, at the nominal drop"},
 		{Key: "nominal_drop", Title: "Nominal drop", Symbol: "ΔpN", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "usual point of data sheets; state it", Above: true, Max: 500e5, Text: "of the throttle at its nominal flow"},
 		{Key: "check_opens", Title: "Check opens at", Symbol: "po", Dim: units.Pressure, Default: "0.5 bar", Origin: Assumed, Source: "common practice", Max: 100e5, Text: "pressure drop at which the check valve begins to open"},
-		{Key: "check_flow", Title: "Nominal flow of the check", Symbol: "q2", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "at check_drop beyond the opening pressure"},
-		{Key: "check_drop", Title: "Nominal drop of the check", Symbol: "Δp2", Dim: units.Pressure, Default: "1 bar", Origin: Assumed, Source: "common practice", Max: 100e5, Text: "at check_flow; 0 bar makes it lossless"},
+		{Key: "check_flow", Title: "Nominal flow of the check", Symbol: "q2", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "at its nominal drop beyond the opening pressure"},
+		{Key: "check_drop", Title: "Nominal drop of the check", Symbol: "Δp2", Dim: units.Pressure, Default: "1 bar", Origin: Assumed, Source: "common practice", Max: 100e5, Text: "at its nominal flow; 0 bar makes it lossless"},
 	},
 	Losses: []LossKind{{"metering", ToOil, "P = Δp·q of the throttle"}, {"check valve", ToOil, "P = Δp·q of the check valve"}},
 	Equations: []Equation{

@@ -17,7 +17,7 @@ var valveKind = &Kind{
 	Ports: append(slices.Clone(edgePorts),
 		Port{Name: "LS", Type: Pilot, Optional: true, Source: true, Text: "pressure of the port that is fed; zero in the centre"}),
 	Params: slices.Concat(steered, []Param{
-		{Key: "centre", Title: "Centre", Type: Choice, Default: "closed", Choices: []string{"closed", "open", "tandem", "float"}, Text: "closed; open: all joined; tandem: P to T, A and B closed; float: A and B to T, P closed"},
+		{Key: "centre", Title: "Centre", Type: Choice, Default: "closed", Choices: []string{"closed", "open", "tandem", "float"}, Called: map[string]string{"float": "floating"}, Text: "closed; open: all joined; tandem: P to T, A and B closed; float: A and B to T, P closed"},
 		{Key: "extend", Title: "Position that feeds A", Type: Choice, Default: "normal", Choices: []string{"normal", "regenerative"}, Text: "normal: P to A, B to T; regenerative: A and B both joined to P, so that a cylinder with its bore side at A extends fast, pushed by the rod area alone"},
 	}, edgeSizes, []Param{
 		{Key: "flow_centre", Title: "Nominal flow in the centre", Symbol: "qC", Dim: units.Flow, Above: true, Max: 10, Text: "of each path that is open in the centre; default: as the edges"},
@@ -56,7 +56,7 @@ var valveKind = &Kind{
 
 func checkValve(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 	if follows(b) != "" && b.Word("directs") != "" {
-		bad(Stops, "directs", "it follows an axis and directs one; keep one of `follows` and `directs`")
+		bad(Stops, "directs", "it follows an axis and directs one; keep one of the two (follows, directs)")
 	}
 }
 

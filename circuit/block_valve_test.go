@@ -84,7 +84,7 @@ func TestSeparateMeterOut(t *testing.T) {
 }
 
 func TestSeparateMeterOutIsRefused(t *testing.T) {
-	for change, want := range map[string]string{"meter_out: separate; extend: regenerative": "has no edge to tank", "meter_out: coupled": "only counts with meter_out: separate"} {
+	for change, want := range map[string]string{"meter_out: separate; extend: regenerative": "has no edge to tank", "meter_out: coupled": "only counts with a separate edge to tank"} {
 		_, found := Compile(build(t, replaced(t, independent, "meter_out: separate", change)), ramAxis, pushing(1e3, 1))
 		if !finds(found, want) {
 			t.Errorf("%s: %v", change, found)

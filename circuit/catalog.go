@@ -57,6 +57,7 @@ type Param struct {
 	Above   bool    // the range excludes Min
 	Need    bool    // must be given
 	Choices []string
+	Called  map[string]string // what choices are called on screen and paper, where that is not their word with spaces
 	Text    string
 	Derived string // what its default follows from in each block, "" where it is the same for all
 	Section Section

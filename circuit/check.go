@@ -126,9 +126,9 @@ func (k *checker) parameters(b *Block, kind *Kind) {
 		if p.Need && !v && b.Word(p.Key) == "" {
 			want := p.Text
 			if p.Type == Choice {
-				want += ": " + join(p.Choices, "or")
+				want += ": " + join(p.choiceNames(), "or")
 			}
-			k.say(Stops, b, p.Key, "%s is missing (%s)", p.Key, want).because(MissingValue, "")
+			k.say(Stops, b, p.Key, "%s is missing (%s)", p.InText(), want).because(MissingValue, "")
 		}
 	}
 	if kind.check != nil {
@@ -206,12 +206,12 @@ func (k *checker) rest() {
 	case Keep, Stop:
 	case Unload:
 		if !k.canUnload() {
-			k.say(Stops, nil, "pump_at_rest", "circuit %q unloads at rest, but nothing in it can: give a relief valve a vented pressure, a pump an unloaded_pressure, a valve a tandem or open centre, or use open-centre sections", k.c.Name).because(RestNotSaid, "")
+			k.say(Stops, nil, "pump_at_rest", "circuit %q unloads at rest, but nothing in it can: give a relief valve a vented pressure, a pump an unloaded pressure (unloaded_pressure), a valve a tandem or open centre, or use open-centre sections", k.c.Name).because(RestNotSaid, "")
 		}
 	case "":
-		k.say(Stops, nil, "pump_at_rest", "circuit %q does not say what its pumps do while everything stands: pump_at_rest: keep, unload or stop", k.c.Name).because(RestNotSaid, "")
+		k.say(Stops, nil, "pump_at_rest", "circuit %q does not say what its pumps do while everything stands: keep turning, turn unloaded or switched off (pump_at_rest: keep, unload or stop)", k.c.Name).because(RestNotSaid, "")
 	default:
-		k.say(Stops, nil, "pump_at_rest", "pump_at_rest is %q, must be keep, unload or stop", k.c.PumpAtRest)
+		k.say(Stops, nil, "pump_at_rest", "what its pumps do while everything stands (pump_at_rest) is %q, must be keep, unload or stop", k.c.PumpAtRest)
 	}
 }
 

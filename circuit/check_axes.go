@@ -151,7 +151,7 @@ func (k *checker) holding(act, control *Block, direct []*Block) {
 		k.say(Stops, act, "hold", "it is held by the pump, but %s throttles it; use hold: valve or brake", control.ID).because(HeldByValve, "")
 	}
 	if hold == "pump" && k.c.PumpAtRest == Stop {
-		k.say(Stops, act, "hold", "it is held by the pump, but pump_at_rest: stop switches the pump off; use keep, or hold: valve or brake")
+		k.say(Stops, act, "hold", "it is held by the pump, but pumps are switched off at rest (pump_at_rest: stop); let them keep turning, or hold it by a valve or brake (hold)")
 	}
 	if hold == "pump" && len(direct) > 0 {
 		k.say(Stops, act, "hold", "it is held by the pump, but %s closes at rest; use hold: valve", direct[0].ID).because(HeldByValve, "")

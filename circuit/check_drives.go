@@ -44,7 +44,7 @@ func (k *checker) reference(b *Block) {
 			return
 		}
 	}
-	k.say(Stops, b, "reference_speed", "no motor or engine turns its shaft; give the reference_speed that its power limit or set flow belongs to").because(MissingValue, "")
+	k.say(Stops, b, "reference_speed", "no motor or engine turns its shaft; give the reference speed (reference_speed) that its power limit or set flow belongs to").because(MissingValue, "")
 }
 
 // terminals checks what a motor's terminals hang on.
@@ -57,9 +57,9 @@ func (k *checker) terminals(b *Block) {
 		k.say(Stops, b, "slip", "a converter feeds it, which makes up for slip; drop one of the two").because(NeedsNoValue, "")
 	case converter:
 	case isServo(b):
-		k.say(Stops, b, "type", "a permanent_magnet motor cannot start on the mains; join its terminals E to a converter").because(NoConverter, "E")
+		k.say(Stops, b, "type", "a permanent-magnet motor cannot start on the mains; join its terminals E to a converter").because(NoConverter, "E")
 	case idles:
-		k.say(Stops, b, "idle_speed", "only a converter can turn it slower; join its terminals E to one, or drop idle_speed").because(NoConverter, "E")
+		k.say(Stops, b, "idle_speed", "only a converter can turn it slower; join its terminals E to one, or drop its soft idle speed (idle_speed)").because(NoConverter, "E")
 	case commandsTorque(b):
 		k.say(Stops, b, "commands", "only a converter can command its torque; join its terminals E to one").because(NoConverter, "E")
 	case varies(b):

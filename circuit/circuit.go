@@ -25,6 +25,14 @@ const (
 	Stop   AtRest = "stop"   // they are switched off
 )
 
+// AtRests lists them.
+var AtRests = []AtRest{Keep, Unload, Stop}
+
+// Name is what it is called on screen and paper.
+func (a AtRest) Name() string {
+	return map[AtRest]string{Keep: "keep turning", Unload: "turn unloaded", Stop: "switched off"}[a]
+}
+
 // Block is one part of a circuit.
 type Block struct {
 	ID     string

@@ -84,7 +84,7 @@ func servoSpeedLoss(p *Param, b *Block, rated float64) (Value, bool) {
 
 func checkElectricMotor(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 	if follows(b) != "" && b.Word("control") != "" {
-		bad(Stops, "control", "it follows an axis and has a control of its own; keep one of `follows` and `control`")
+		bad(Stops, "control", "it follows an axis and has a control of its own; keep one of the two (follows, control)")
 	}
 	checkMotorEfficiency(b, bad)
 	checkMotorSlip(b, bad)
@@ -98,7 +98,7 @@ func checkElectricMotor(k *Kind, b *Block, bad func(Level, string, string, ...an
 	n, _ := number(b, "speed")
 	switch {
 	case ok && varies(b):
-		bad(Stops, "idle_speed", "its speed is found or commanded, so it has no idle speed; command it, or drop idle_speed")
+		bad(Stops, "idle_speed", "its speed is found or commanded, so it has no idle speed; command it, or drop its soft idle speed (idle_speed)")
 	case ok && idle.SI > n:
 		bad(Stops, "idle_speed", "its idle speed is above its speed of %s", show(n, units.AngularSpeed))
 	}
@@ -113,9 +113,9 @@ func checkMotorEfficiency(b *Block, bad func(Level, string, string, ...any)) {
 	f, _ := number(b, "frequency")
 	switch {
 	case isServo(b) && class != "":
-		bad(Stops, "efficiency_class", "the classes are those of induction motors; type the efficiency of a servo motor, or its torque_constant, resistance and speed_loss")
+		bad(Stops, "efficiency_class", "the classes are those of induction motors; type the efficiency of a servo motor, or its torque constant, resistance and loss at speed (torque_constant, resistance, speed_loss)")
 	case kT != R || (!isServo(b) && (kT || P0)):
-		bad(Stops, "torque_constant", "torque_constant and resistance go together, on a motor of type: permanent_magnet")
+		bad(Stops, "torque_constant", "torque constant and resistance (torque_constant, resistance) go together, on a permanent-magnet motor")
 	case isServo(b) && kT && (typed || P0):
 	case class != "" && !typed:
 		if _, _, err := machines.EfficiencyClass(class, roundRating(b.Values["rated_power"].SI), polesOf(b)); err != nil {
@@ -124,7 +124,7 @@ func checkMotorEfficiency(b *Block, bad func(Level, string, string, ...any)) {
 			bad(Stops, "efficiency_class", "efficiency classes are known at 50 Hz; type the name-plate efficiency")
 		}
 	case !typed:
-		bad(Stops, "efficiency", "efficiency is missing (on the name plate; or give its efficiency_class)")
+		bad(Stops, "efficiency", "efficiency is missing (on the name plate; or give its efficiency class, efficiency_class)")
 	}
 	if class != "" && typed {
 		bad(Note, "efficiency_class", "its efficiency is typed, which is used; its class is not")
@@ -139,7 +139,7 @@ func checkMotorSlip(b *Block, bad func(Level, string, string, ...any)) {
 	n, _ := number(b, "speed")
 	switch ws := fieldSpeed(b); {
 	case isServo(b):
-		bad(Stops, "slip", "a permanent_magnet motor turns without slip; drop it")
+		bad(Stops, "slip", "a permanent-magnet motor turns without slip; drop it")
 	case varies(b):
 		bad(Stops, "slip", "its speed is found or commanded, so a converter makes up for slip; drop it")
 	case limit:

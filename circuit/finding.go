@@ -113,6 +113,51 @@ func (f *Finding) Marked() bool {
 	return false
 }
 
+// ToMend reports whether a finding asks for something to be mended: it keeps the circuit from being solved or is
+// likely an error.
+func (f *Finding) ToMend() bool { return f.Level == Stops || f.Level == Warns }
+
+// Tally counts findings. It is the one count behind all that a window says of them.
+type Tally struct {
+	All    int
+	Faults int // that keep a circuit from being solved
+	ToMend int // further ones that are to be mended
+}
+
+// TallyOf counts.
+func TallyOf(fs []Finding) Tally {
+	t := Tally{All: len(fs)}
+	for i := range fs {
+		switch {
+		case fs[i].Level == Stops:
+			t.Faults++
+		case fs[i].ToMend():
+			t.ToMend++
+		}
+	}
+	return t
+}
+
+// String says how many there are, and what they ask for: "27, 3 to mend".
+func (t Tally) String() string {
+	text := fmt.Sprint(t.All)
+	if t.All == 0 {
+		return text
+	}
+	switch {
+	case t.Faults == 1:
+		text += ", 1 fault"
+	case t.Faults > 1:
+		text += fmt.Sprintf(", %d faults", t.Faults)
+	case t.ToMend == 0:
+		text += ", none to mend"
+	}
+	if t.ToMend > 0 {
+		text += fmt.Sprintf(", %d to mend", t.ToMend)
+	}
+	return text
+}
+
 // AnyStops reports whether a finding keeps the circuit from being solved.
 func AnyStops(fs []Finding) bool {
 	for _, f := range fs {

@@ -136,24 +136,24 @@ func checkMachine(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 	share, _, _ := k.Value(b, "case_share")
 	switch {
 	case flow && worn:
-		bad(Stops, "wear", "wear and drain_flow both set the slip; keep one")
+		bad(Stops, "wear", "wear and measured case-drain flow (wear, drain_flow) both set the slip; keep one")
 	case flow && !pressure:
-		bad(Stops, "drain_pressure", "a measured drain_flow needs the drain_pressure it was measured at")
+		bad(Stops, "drain_pressure", "a measured case-drain flow needs the pressure it was measured at (drain_pressure)")
 	case !flow && (pressure || theta):
-		bad(Stops, "drain_flow", "drain_pressure and drain_temperature belong to a measured drain_flow; give that, or drop them")
+		bad(Stops, "drain_flow", "pressure and temperature of the case drain (drain_pressure, drain_temperature) belong to a measured case-drain flow (drain_flow); give that, or drop them")
 	case flow && share.SI == 0:
-		bad(Stops, "case_share", "with case_share 0 no slip leaves by the drain, so a drain_flow says nothing; set case_share above 0")
+		bad(Stops, "case_share", "with no share of the slip to the case (case_share) none leaves by the drain, so a measured case-drain flow says nothing; set the share above 0")
 	}
 	if b.Word("points") != "" && estimated(b) {
 		bad(Stops, "points", "points and a family or best point both set the coefficients; keep one")
 	}
 	if b.Word("points") == "" && (b.Word("points_as") != "" || hasValue(b, "points_viscosity")) {
-		bad(Stops, "points", "points_as and points_viscosity belong to measured points; name their file, or drop them")
+		bad(Stops, "points", "use and viscosity of the points (points_as, points_viscosity) belong to measured points; name their file, or drop them")
 	}
 	from, ok1 := value("optimum_viscosity_from")
 	to, ok2 := value("optimum_viscosity_to")
 	if ok1 && ok2 && from >= to {
-		bad(Stops, "optimum_viscosity_to", "optimum_viscosity_to is not above optimum_viscosity_from")
+		bad(Stops, "optimum_viscosity_to", "the range of optimum viscosity must end (optimum_viscosity_to) above where it begins (optimum_viscosity_from)")
 	}
 	if b.Fit != nil {
 		for _, w := range b.Fit.Warnings {

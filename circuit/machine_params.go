@@ -51,7 +51,7 @@ func coefficientParams() []Param {
 func wearParams(share string) []Param {
 	return LossBasis.of([]Param{
 		{Key: "wear", Title: "Wear", Symbol: "W", Dim: units.Ratio, Default: "1", Origin: Assumed, Source: "as new", Above: true, Max: 100, Text: "multiplies laminar and turbulent slip"},
-		{Key: "drain_flow", Title: "Measured case-drain flow", Symbol: "qD", Dim: units.Flow, Above: true, Max: 0.1, Text: "sets laminar and turbulent slip, in place of wear; needs drain_pressure"},
+		{Key: "drain_flow", Title: "Measured case-drain flow", Symbol: "qD", Dim: units.Flow, Above: true, Max: 0.1, Text: "sets laminar and turbulent slip, in place of wear; needs the pressure it was measured at"},
 		{Key: "drain_pressure", Title: "Pressure of that measurement", Symbol: "pD", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "pressure difference of the machine while its drain was measured"},
 		{Key: "drain_temperature", Title: "Temperature of that measurement", Dim: units.Temperature, Min: 233.15, Max: 423.15, Text: "of the oil; when not given its working temperature"},
 		{Key: "case_share", Title: "Slip to the case", Symbol: "kc", Dim: units.Ratio, Default: share, Origin: Assumed, Source: "share of the slip that leaves by the case drain, common practice", Max: 1, Text: "the rest slips from port to port; an open drain goes to tank"},

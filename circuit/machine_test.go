@@ -314,7 +314,7 @@ func TestMachineRefusals(t *testing.T) {
 		{"; points_viscosity: 30 mPa s", "measured points"},
 		{"; family: screw", "must be one of"},
 		{"; points: a.csv; family: vane", "keep one"},
-		{"; optimum_viscosity_from: 30 mm2/s; optimum_viscosity_to: 20 mm2/s", "not above"},
+		{"; optimum_viscosity_from: 30 mm2/s; optimum_viscosity_to: 20 mm2/s", "must end (optimum_viscosity_to) above"},
 	} {
 		_, found := Compile(build(t, drainBench+c.more), nil, still)
 		said := ""

@@ -4,19 +4,19 @@ import "barlitre/machines/units"
 
 // meterOutParams are the parameters of an edge to tank with an opening of its own.
 var meterOutParams = []Param{
-	{Key: "meter_out", Title: "Edge to tank", Type: Choice, Default: "coupled", Choices: []string{"coupled", "separate"}, Text: "coupled: one spool, the same opening on both edges; separate: an edge of its own (independent metering), open as far as the pressure at the port that is fed stays at in_pressure"},
-	{Key: "in_pressure", Title: "Pressure kept at the port fed", Symbol: "pi", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "enough to keep the fed side full, our choice", Max: 100e5, Text: "with meter_out: separate, while the load drives"},
+	{Key: "meter_out", Title: "Edge to tank", Type: Choice, Default: "coupled", Choices: []string{"coupled", "separate"}, Text: "coupled: one spool, the same opening on both edges; separate: an edge of its own (independent metering), open as far as the pressure at the port that is fed is kept"},
+	{Key: "in_pressure", Title: "Pressure kept at the port fed", Symbol: "pi", Dim: units.Pressure, Default: "5 bar", Origin: Assumed, Source: "enough to keep the fed side full, our choice", Max: 100e5, Text: "with a separate edge to tank, while the load drives"},
 }
 
 func checkMeterOut(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 	separate := k.WordOf(b, "meter_out") == "separate"
 	switch _, given := b.Values["in_pressure"]; {
 	case separate && follows(b) == "":
-		bad(Stops, "meter_out", "an edge to tank of its own is for a valve that follows an axis; set follows, or meter_out: coupled")
+		bad(Stops, "meter_out", "an edge to tank of its own is for a valve that follows an axis; name its axis (follows), or couple the edges (meter_out: coupled)")
 	case separate && b.Word("extend") == "regenerative":
-		bad(Stops, "meter_out", "the regenerative position has no edge to tank; keep one of extend: regenerative and meter_out: separate")
+		bad(Stops, "meter_out", "the regenerative position has no edge to tank; keep one of the two (extend: regenerative, meter_out: separate)")
 	case given && !separate:
-		bad(Warns, "in_pressure", "it only counts with meter_out: separate")
+		bad(Warns, "in_pressure", "it only counts with a separate edge to tank (meter_out: separate)")
 	}
 }
 

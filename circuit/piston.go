@@ -20,7 +20,7 @@ var pistonLeakage = Param{Key: "leakage", Title: "Piston leakage", Symbol: "kl",
 // strokeParams are the parameters of every cylinder, after those of its size.
 func strokeParams(sealShare string, more ...Param) []Param {
 	ps := []Param{
-		{Key: "stroke", Title: "Stroke", Symbol: "s", Dim: units.Length, Above: true, Max: 30, Text: "from end to end; alone it only checks the way of the duty, with `start` the piston stops at its ends"},
+		{Key: "stroke", Title: "Stroke", Symbol: "s", Dim: units.Length, Above: true, Max: 30, Text: "from end to end; alone it only checks the way of the duty, with a start the piston stops at its ends"},
 		{Key: "start", Title: "Position at the start", Symbol: "s0", Dim: units.Length, Max: 30, Text: "where the piston stands when the duty begins, 0 drawn in"},
 		{Key: "friction", Title: "Dry friction", Symbol: "Fc", Dim: units.Force, Default: "0 N", Origin: Assumed, Source: "none counted unless given", Max: 1e7, Text: "force that resists motion, of constant size"},
 		{Key: "pressure_friction", Title: "Friction by pressure", Symbol: "kp", Dim: units.Ratio, Default: "0", Origin: Assumed, Source: "none counted unless given", Max: 0.5, Text: sealShare},

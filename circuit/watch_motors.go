@@ -156,7 +156,7 @@ func (m *motorWatch) startsGate(w *Watch) Gate {
 	if isDefault {
 		from = v.Note
 	}
-	g := gateOf(m.b, "starts_per_hour", "starts an hour", perHour, limit, units.Count, 0, "pump_at_rest: stop starts it straight on the mains after each rest; limit: "+from)
+	g := gateOf(m.b, "starts_per_hour", "starts an hour", perHour, limit, units.Count, 0, "switched off at rest (pump_at_rest: stop), it is started straight on the mains after each rest; limit: "+from)
 	return g.or(Warns, fmt.Sprintf("it is started %s times an hour, more than the %s it stands (%s); unload instead, or put a converter before it", units.Number(perHour, 3), units.Number(limit, 3), from))
 }
 

@@ -39,8 +39,8 @@ func returnParams(reverse ...string) []Param {
 	return []Param{
 		{Key: "reverse", Title: "Against its direction", Type: Choice, Default: reverse[0], Choices: reverse, Text: "free: a built-in check valve passes oil back"},
 		{Key: "check_opens", Title: "Check opens at", Symbol: "po", Dim: units.Pressure, Default: "0.5 bar", Origin: Assumed, Source: "common practice", Max: 100e5, Text: "pressure drop at which the built-in check valve begins to open"},
-		{Key: "check_flow", Title: "Nominal flow of the check", Symbol: "q2", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "of the built-in check valve, at check_drop beyond its opening pressure"},
-		{Key: "check_drop", Title: "Nominal drop of the check", Symbol: "Δp2", Dim: units.Pressure, Default: "1 bar", Origin: Assumed, Source: "common practice", Max: 100e5, Text: "of the built-in check valve at check_flow; 0 bar makes it lossless"},
+		{Key: "check_flow", Title: "Nominal flow of the check", Symbol: "q2", Dim: units.Flow, Default: "60 L/min", Origin: Assumed, Source: "state the size of the valve", Above: true, Max: 10, Text: "of the built-in check valve, at its nominal drop beyond its opening pressure"},
+		{Key: "check_drop", Title: "Nominal drop of the check", Symbol: "Δp2", Dim: units.Pressure, Default: "1 bar", Origin: Assumed, Source: "common practice", Max: 100e5, Text: "of the built-in check valve at its nominal flow; 0 bar makes it lossless"},
 	}
 }
 

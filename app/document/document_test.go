@@ -255,7 +255,7 @@ func TestNames(t *testing.T) {
 		"energy.price.low":          "Change energy price low",
 		"RV1.nothing":               "Change RV1: nothing",
 		"As found/RV2.crack":        "Change RV2: cracks at (As found)",
-		"As found/C1.rating.value":  "Change C1: " + lowerFirst(circuit.KindNamed("cylinder").Param("rating").Title) + ", value (As found)",
+		"As found/C1.rating.value":  "Change C1: " + circuit.InSentence(circuit.KindNamed("cylinder").Param("rating").Title) + ", value (As found)",
 	} {
 		if got := setName(b.File(), target); got != want {
 			t.Errorf("%s: %q, want %q", target, got, want)

@@ -5,6 +5,7 @@ import (
 
 	"barlitre/audit"
 	"barlitre/audit/fixfirst"
+	"barlitre/circuit"
 	"barlitre/machines/units"
 )
 
@@ -37,6 +38,24 @@ func (d *Document) Faults(system units.System) []*fixfirst.Finding {
 		go d.findFaults(now)
 	}
 	return f.list
+}
+
+// Listed are all findings, as a list shows them and as they are counted: those of check and solution, and the faults of
+// the circuits as found that fix first knows. Linked are those that fix first tells more of: the faults, and what is said
+// of the same setting already.
+func (d *Document) Listed(system units.System) (all, linked []circuit.Finding) {
+	all = d.Findings()
+	for _, x := range d.Faults(system) {
+		i := slices.IndexFunc(all, func(g circuit.Finding) bool {
+			return x.Param != "" && g.Level == circuit.Warns && g.Circuit == x.Circuit && g.Block == x.Block && g.Parameter == x.Param
+		})
+		if i < 0 {
+			i = len(all)
+			all = append(all, circuit.Finding{Level: circuit.Warns, Circuit: x.Circuit, Duty: x.Duty, Block: x.Block, Parameter: x.Param, Time: x.Time, Text: x.Text})
+		}
+		linked = append(linked, all[i])
+	}
+	return all, linked
 }
 
 func (d *Document) findFaults(now faultsOf) {

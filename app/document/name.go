@@ -2,8 +2,6 @@ package document
 
 import (
 	"strings"
-	"unicode"
-	"unicode/utf8"
 
 	"barlitre/audit"
 	"barlitre/circuit"
@@ -33,7 +31,7 @@ func setName(f *audit.File, target string) string {
 	}
 	what := strings.ReplaceAll(words[1], "_", " ")
 	if p := kind.Param(words[1]); p != nil {
-		what = lowerFirst(p.Title)
+		what = circuit.InSentence(p.Title)
 	}
 	if len(words) > 2 {
 		what += ", " + words[2]
@@ -53,13 +51,4 @@ func kindOf(f *audit.File, where, id string) *circuit.Kind {
 		}
 	}
 	return nil
-}
-
-// lowerFirst makes a title part of a sentence; an abbreviation stays as it is.
-func lowerFirst(s string) string {
-	first, n := utf8.DecodeRuneInString(s)
-	if second, _ := utf8.DecodeRuneInString(s[n:]); unicode.IsUpper(second) {
-		return s
-	}
-	return string(unicode.ToLower(first)) + s[n:]
 }

@@ -37,8 +37,9 @@ func newAxisRows(p *panel, a cycle.Axis) *axisRows {
 			p.do(doc.Edit("Add speed and load of "+axis, func(f *audit.File) error { return speedAndLoad(f, duty, axis) }))
 		}), "duty.axis."+axis+".both")
 		rows.Add(container.NewHBox(r.both))
-		sign := widget.NewLabel("  " + signs)
-		sign.Wrapping, sign.Importance = fyne.TextWrapWord, widget.LowImportance
+		sign := widgets.Wrapped("")
+		sign.Importance = widget.LowImportance
+		sign.SetText("  " + signs)
 		rows.Add(sign)
 	}
 	r.content = rows

@@ -28,10 +28,10 @@ type Station struct {
 	empty   fyne.CanvasObject
 	picker  *widgets.Select
 	facts   *widget.Label
-	source  *widget.Label
+	source  *widgets.Text
 	plot    *widgets.ClockPlot
 	table   *widgets.Table
-	refusal *widget.Label
+	refusal *widgets.Text
 	notes   *fyne.Container
 	panel   *panel
 	pages   *pages
@@ -75,16 +75,14 @@ func (s *Station) build() {
 	}
 	s.facts = widgets.Name(widget.NewLabel(""), "duty.facts")
 	s.facts.Truncation = fyne.TextTruncateEllipsis
-	s.source = widgets.Name(widget.NewLabel(""), "duty.source")
-	s.source.Wrapping = fyne.TextWrapWord
+	s.source = widgets.Wrapped("duty.source")
 	s.plot = widgets.Name(widgets.NewClockPlot(fyne.NewSize(300, 120), s.ctx.Palette), "duty.plot")
 	s.plot.Moved = s.ctx.SetClock
 	s.plot.Zooms = true
 	s.plot.Value = s.valueAt
 	s.plot.Points = plotPoints{s}
 	s.plot.Format = func(t float64) string { return s.ctx.Text(t, units.Time, 4) }
-	s.refusal = widgets.Name(widget.NewLabel(""), "duty.refusal")
-	s.refusal.Wrapping = fyne.TextWrapWord
+	s.refusal = widgets.Wrapped("duty.refusal")
 	s.refusal.Importance = widget.LowImportance
 	s.table = widgets.Name(s.newTable(), "duty.table")
 	s.notes = container.NewVBox()
@@ -166,7 +164,7 @@ func (s *Station) reload() {
 	}
 	s.fillPicker()
 	s.tracks = s.tracksOf(d)
-	setText(s.facts, s.factsOf(d))
+	s.facts.SetText(s.factsOf(d))
 	s.ground.FillColor = s.ctx.Palette().Card
 	s.ground.Refresh()
 	if d.Name != s.of { // another duty: all of it is shown
@@ -179,8 +177,8 @@ func (s *Station) reload() {
 	s.panel.fill()
 }
 
-func setText(l *widget.Label, text string) {
-	if l.Text != text {
+func setText(l *widgets.Text, text string) {
+	if l.DumpText() != text {
 		l.SetText(text)
 	}
 }
@@ -254,7 +252,7 @@ func (s *Station) sourceOf(d *cycle.Duty) string {
 // Mend reports whether a duty is at fault.
 func (s *Station) Mend() bool {
 	for _, f := range s.ctx.Doc().Findings() {
-		if ofDuty(f) && (f.Level == circuit.Stops || f.Level == circuit.Warns) {
+		if ofDuty(f) && f.ToMend() {
 			return true
 		}
 	}

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"math"
 
-	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 
@@ -53,9 +52,9 @@ func (s *Station) fillNotes() {
 }
 
 func (s *Station) note(name, text string, importance widget.Importance, bold bool) {
-	l := widget.NewLabelWithStyle(text, fyne.TextAlignLeading, fyne.TextStyle{Bold: bold})
-	l.Wrapping = fyne.TextWrapWord
-	l.Importance = importance
+	l := widgets.Wrapped("")
+	l.TextStyle.Bold, l.Importance = bold, importance
+	l.SetText(text)
 	if name != "" {
 		widgets.Name(l, "duty.note."+name)
 	}

@@ -118,8 +118,8 @@ func (p *panel) rebuild(f *audit.File) {
 		p.axes.Add(r.content)
 	}
 	if len(f.Axes) == 0 {
-		text := widget.NewLabel("An axis is a place where the machine does work: a ram, a winch drum. Name the first one.")
-		text.Wrapping = fyne.TextWrapWord
+		text := widgets.Wrapped("")
+		text.SetText("An axis is a place where the machine does work: a ram, a winch drum. Name the first one.")
 		p.axes.Add(text)
 	}
 	if tracks := p.blockTracks(f); p.s.shown != nil && len(tracks) > 0 {

@@ -21,7 +21,7 @@ type phases struct {
 	body    fyne.CanvasObject
 	beside  *fyne.Container
 	table   *widgets.Table
-	note    *widget.Label
+	note    *widgets.Text
 	preset  *widgets.Select
 	own     *fyne.Container // buttons for a duty that has phases
 	start   *widgets.Button // for one that has not
@@ -38,8 +38,8 @@ type phaseColumn struct {
 }
 
 func newPhases(s *Station) *phases {
-	p := &phases{s: s, note: widgets.Name(widget.NewLabel(""), "duty.phases.note")}
-	p.note.Wrapping, p.note.Importance = fyne.TextWrapWord, widget.LowImportance
+	p := &phases{s: s, note: widgets.Wrapped("duty.phases.note")}
+	p.note.Importance = widget.LowImportance
 	p.table = widgets.Name(widgets.NewTable(fyne.NewSize(240, 90), s.ctx.Palette), "duty.phases")
 	p.table.Note, p.table.Commit, p.table.Key = p.note, p.commit, p.key
 	p.table.Editable = func(row, col int) bool { return s.staged() && row <= len(p.texts) }

@@ -24,12 +24,12 @@ type year struct {
 	beside       *fyne.Container
 	none, filled fyne.CanvasObject // without a calendar, and with one
 	begin, own   fyne.CanvasObject // buttons for either
-	told         *widget.Label     // without one: what is typed at the duties
+	told         *widgets.Text     // without one: what is typed at the duties
 	picture      *widgets.Figure
 	states       *widgets.Table
 	shifts       *widgets.Table
 	duties       *widgets.Table
-	warning      *widget.Label
+	warning      *widgets.Text
 	fields       map[string]*widgets.Field // by key of the calendar
 	perCircuit   *fyne.Container           // what each circuit draws while off
 	standby      map[string]*widgets.Field // by circuit
@@ -48,8 +48,7 @@ var yearFields = []struct{ key, title, hint string }{
 
 func newYear(s *Station) *year {
 	y := &year{s: s, fields: map[string]*widgets.Field{}}
-	y.told = widgets.Name(widget.NewLabel(""), "duty.year.told")
-	y.told.Wrapping = fyne.TextWrapWord
+	y.told = widgets.Wrapped("duty.year.told")
 	y.begin = widgets.Name(widgets.NewButton("Begin a shift calendar", y.add), "duty.year.begin")
 	y.own = container.NewHBox(
 		widgets.Name(widgets.NewButton("Add shift", y.addShift), "duty.shift.add"),
@@ -61,8 +60,8 @@ func newYear(s *Station) *year {
 		return nil
 	}), "duty.year.week")
 	y.picture.Ground = nil
-	y.warning = widgets.Name(widget.NewLabel(""), "duty.year.warning")
-	y.warning.Wrapping, y.warning.Importance = fyne.TextWrapWord, widget.DangerImportance
+	y.warning = widgets.Wrapped("duty.year.warning")
+	y.warning.Importance = widget.DangerImportance
 	scroll := container.NewVScroll(nil)
 	scroll.Content = y.lay(scroll)
 	y.none, y.filled = container.NewVScroll(y.told), scroll
@@ -79,9 +78,9 @@ func (y *year) lay(scroll *container.Scroll) fyne.CanvasObject {
 	}
 	y.states, y.shifts, y.duties = table("duty.year.states"), table("duty.year.shifts"), table("duty.year.duties")
 	y.states.ByRow = true
-	note := func(t *widgets.Table, hint string) *widget.Label {
-		l := widget.NewLabel("")
-		l.Wrapping, l.Importance = fyne.TextWrapWord, widget.LowImportance
+	note := func(t *widgets.Table, hint string) *widgets.Text {
+		l := widgets.Wrapped("")
+		l.Importance = widget.LowImportance
 		t.Note, t.Hint = l, func(int, int) string { return hint }
 		return l
 	}

@@ -107,8 +107,8 @@ func (l *ladder) item(it fixfirst.Item) {
 		l.content.Add(l.text(name+".caution", "▲ "+it.Caution, widget.DangerImportance))
 	}
 	basis := "Limit: " + it.Basis + "."
-	if it.Cure != "" {
-		basis += " Priced with " + it.Cure + "."
+	if len(it.Edits) > 0 {
+		basis += " Priced with " + l.ctx.Local(it.Edits.InWords(l.ctx.Doc().File())) + "."
 	}
 	l.content.Add(l.text("", basis, widget.LowImportance))
 }

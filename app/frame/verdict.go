@@ -119,7 +119,7 @@ func (f *Frame) stateText() (text string, good bool) {
 	case !f.doc.Current() && f.solution != nil:
 		return "out of date", false
 	case f.solution == nil:
-		if n := f.count(circuit.Stops); n > 0 {
+		if n := f.tally().Faults; n > 0 {
 			return "cannot be solved: " + plural(n, "fault", "faults"), false
 		}
 		return "not solved", false
@@ -127,7 +127,7 @@ func (f *Frame) stateText() (text string, good bool) {
 	for _, c := range f.solution.Circuits {
 		for _, d := range c.Duties {
 			if d.Balance == nil {
-				return c.Circuit.Name + " cannot be solved: " + plural(max(1, f.count(circuit.Stops)), "fault", "faults"), false
+				return c.Circuit.Name + " cannot be solved: " + plural(max(1, f.tally().Faults), "fault", "faults"), false
 			}
 			if d.Certificate.Unbalanced > 0 {
 				return "steps left unbalanced", false
@@ -140,24 +140,19 @@ func (f *Frame) stateText() (text string, good bool) {
 	case f.solution.Pending:
 		return "oil temperature cancelled", false
 	}
-	if n := f.count(circuit.Stops); n > 0 {
+	if n := f.tally().Faults; n > 0 {
 		return "cannot be solved: " + plural(n, "fault", "faults"), false
 	}
-	if n := f.count(circuit.Warns) + len(f.doc.Faults(f.settings.system)); n > 0 {
+	if n := f.tally().ToMend; n > 0 {
 		return "up to date, " + plural(n, "finding", "findings") + " to mend", true
 	}
 	return "up to date", true
 }
 
-// count is how many findings of a level there are.
-func (f *Frame) count(l circuit.Level) int {
-	n := 0
-	for _, g := range f.doc.Findings() {
-		if g.Level == l {
-			n++
-		}
-	}
-	return n
+// tally counts the findings, as the list beside the circuits does.
+func (f *Frame) tally() circuit.Tally {
+	all, _ := f.doc.Listed(f.settings.system)
+	return circuit.TallyOf(all)
 }
 
 func (f *Frame) drawVerdict(p pen.Pen, w, h float64) []widgets.Part {

@@ -36,7 +36,7 @@ type sectionRow struct {
 	field  *widgets.Field
 	choice *widgets.Select
 	origin *widgets.Select
-	note   *widget.Label
+	note   *widgets.Text
 }
 
 func newSection(ctx station.Context) *section {
@@ -78,8 +78,8 @@ func (s *section) see() {
 }
 
 func (s *section) row(k *audit.HeatKey) *sectionRow {
-	r := &sectionRow{s: s, key: k, note: widget.NewLabel("")}
-	r.note.Wrapping, r.note.Importance = fyne.TextWrapWord, widget.LowImportance
+	r := &sectionRow{s: s, key: k, note: widgets.Wrapped("")}
+	r.note.Importance = widget.LowImportance
 	name := "heat.field." + k.Key
 	if len(k.Choices) > 0 {
 		r.choice = widgets.Name(widgets.NewSelect(k.Choices, r.choose), name)

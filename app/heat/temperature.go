@@ -5,7 +5,6 @@ import (
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/station"
 	"barlitre/app/widgets"
@@ -31,8 +30,7 @@ func newTemperature(ctx station.Context, title, target, name string) *temperatur
 	t.value = widgets.Name(widgets.NewField("", t.put("")), name)
 	t.low = widgets.Name(widgets.NewField("", t.put(".low")), name+".low")
 	t.high = widgets.Name(widgets.NewField("", t.put(".high")), name+".high")
-	note := widget.NewLabel("")
-	note.Wrapping = fyne.TextWrapWord
+	note := widgets.Wrapped("")
 	t.low.Note, t.high.Note = note, note
 	t.band = widgets.Row("  lies within", container.NewGridWithColumns(2, t.low, t.high), note)
 	t.content = container.NewVBox(widgets.FieldRow(title, t.value), t.band)

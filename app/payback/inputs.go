@@ -48,8 +48,7 @@ func newInputs(ctx station.Context) *inputs {
 	in.low, in.high = in.field("payback.price.low", in.putPrice(".low")), in.field("payback.price.high", in.putPrice(".high"))
 	in.note = in.field("payback.price.note", in.put("Change the note on the price", "energy.price.note"))
 	in.note.Scroll = fyne.ScrollHorizontalOnly
-	bandNote := widget.NewLabel("")
-	bandNote.Wrapping = fyne.TextWrapWord
+	bandNote := widgets.Wrapped("")
 	in.low.Note, in.high.Note = bandNote, bandNote
 	in.band = widgets.Row("  lies within", container.NewGridWithColumns(2, in.low, in.high), bandNote)
 	var origins []string

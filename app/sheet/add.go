@@ -31,7 +31,7 @@ func (e *editor) add(kind string, at [2]float64) {
 		e.zoom, e.x, e.y = zoom, x, y
 		e.redraw()
 	}
-	e.s.ctx.Say("Added " + id + ", " + lower(circuit.KindNamed(kind).Title) + ". Drag from a port to a port to connect; its values stand on the right; F2 renames it.")
+	e.s.ctx.Say("Added " + id + ", " + circuit.InSentence(circuit.KindNamed(kind).Title) + ". Drag from a port to a port to connect; its values stand on the right; F2 renames it.")
 }
 
 // begin adds a circuit with a first block, as one step of undo.

@@ -20,8 +20,12 @@ func (p *panel) circuitRows(c *audit.CircuitEntry) {
 	}
 	note.field.Scroll = container.ScrollHorizontalOnly
 	note.stack(note.field)
+	var words []string
+	for _, a := range circuit.AtRests {
+		words = append(words, string(a))
+	}
 	rest := newSelectRow(p, "Pumps while every axis stands", "field.pump_at_rest", name+"/pump_at_rest",
-		[]string{string(circuit.Keep), string(circuit.Unload), string(circuit.Stop)})
+		words, func(word string) string { return circuit.AtRest(word).Name() })
 	rest.value = func() (string, string) {
 		c := doc.File().Circuit(name)
 		if c == nil {

@@ -64,7 +64,7 @@ func (f *findings) mend(i int) {
 		return
 	}
 	f.showDrawn(g, had)
-	f.s.ctx.Say("Done: " + lower(c.Name) + ". " + c.Told + pick(c.Told == "", "", " ") + "Ctrl+Z takes it back.")
+	f.s.ctx.Say("Done: " + circuit.InSentence(c.Name) + ". " + c.Told + pick(c.Told == "", "", " ") + "Ctrl+Z takes it back.")
 }
 
 // showDrawn selects the first block that was not there before, else the finding's.

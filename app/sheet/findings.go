@@ -30,6 +30,8 @@ type findings struct {
 	faults  []bool       // of list: found by fix first, whose page tells more
 	at      int          // where the keys are
 	focused bool
+	opened  bool   // another file, whose list begins at its top
+	sides   [2]int // the circuits that are shown
 	paper   *widgets.Rim
 	head    *widgets.Figure
 	figure  *widgets.Figure
@@ -77,15 +79,13 @@ func newFindings(s *Station) *findings {
 // stays as it was, so that it does not flicker.
 func (f *findings) reload() {
 	doc := f.s.ctx.Doc()
-	if solving, _, _ := doc.Solving(); !solving || len(f.list) == 0 {
-		list, faults := f.withFaults(doc.Findings())
+	anew := f.otherCircuits()
+	newStop, before := false, f.place()
+	if solving, _, _ := doc.Solving(); !solving || anew || len(f.list) == 0 {
+		list, faults := doc.Listed(f.s.ctx.System())
 		slices.SortStableFunc(list, func(a, b circuit.Finding) int { return slices.Index(ranks, a.Level) - slices.Index(ranks, b.Level) })
-		newStop := slices.ContainsFunc(list, func(g circuit.Finding) bool { return g.Level == circuit.Stops && !slices.Contains(f.list, g) })
+		newStop = slices.ContainsFunc(list, func(g circuit.Finding) bool { return g.Level == circuit.Stops && !slices.Contains(f.list, g) })
 		f.list, f.cures, f.faults = list, nil, nil
-		if newStop {
-			f.at = 0
-			f.scroll.ScrollToTop()
-		}
 		for _, g := range list {
 			f.cures = append(f.cures, doc.Cure(g))
 			f.faults = append(f.faults, slices.Contains(faults, g))
@@ -93,8 +93,15 @@ func (f *findings) reload() {
 	}
 	f.at = min(f.at, max(0, len(f.list)-1))
 	f.measure()
+	if anew || newStop {
+		f.at = 0
+		f.scroll.ScrollToTop()
+	} else {
+		f.keepPlace(before)
+	}
 	f.head.Refresh()
 	f.figure.Refresh()
+	f.s.edge.Refresh()
 }
 
 // of is the place in the list of the worst finding marked at a block, −1 for none.
@@ -165,8 +172,8 @@ func (f *findings) height(i int) float64 {
 func (f *findings) drawHead(p pen.Pen, w, _ float64) []widgets.Part {
 	pal := f.s.ctx.Palette()
 	text := "Findings"
-	if n := len(f.list); n > 0 {
-		text += fmt.Sprintf(" · %d", n)
+	if len(f.list) > 0 {
+		text += " · " + circuit.TallyOf(f.list).String()
 	}
 	p.Text(pen.Pt{X: 8, Y: 18}, text, 14, pal.Ink, pen.Left, true)
 	doc := f.s.ctx.Doc()
@@ -285,7 +292,7 @@ func (f *findings) open(i int) {
 func (f *findings) Parts() []widgets.Part { return f.figure.Parts() }
 
 // DumpText counts them.
-func (f *findings) DumpText() string { return fmt.Sprintf("%d findings", len(f.list)) }
+func (f *findings) DumpText() string { return "findings: " + circuit.TallyOf(f.list).String() }
 
 // AcceptsTab: Tab goes on.
 func (f *findings) AcceptsTab() bool { return false }
@@ -330,16 +337,6 @@ func (f *findings) follow() {
 		f.at = i
 		f.scrollTo(i)
 	}
-}
-
-// scrollTo brings a finding to the top of the list.
-func (f *findings) scrollTo(i int) {
-	y := 0.0
-	for k := range f.list[:max(0, i)] {
-		y += f.height(k)
-	}
-	f.scroll.ScrollToOffset(fyne.NewPos(0, float32(y)*widgets.Scale()))
-	f.figure.Refresh()
 }
 
 // MinSize is that of the list.

@@ -16,7 +16,7 @@ import (
 type group struct {
 	section circuit.Section
 	head    fyne.CanvasObject // nil where the kind has no sections
-	about   *widget.Label     // what the values that are not shown follow from
+	about   *widgets.Text     // what the values that are not shown follow from
 	toggle  *link             // nil where all values are shown anyway
 	rows    []row
 	later   []*circuit.Param // left at their defaults
@@ -79,7 +79,7 @@ func (p *panel) summarize() {
 		if !p.expanded[g.section] {
 			text = commonReason(b, g.later)
 		}
-		if g.about.Text != text {
+		if g.about.DumpText() != text {
 			g.about.SetText(text)
 		}
 	}

@@ -161,11 +161,8 @@ func (s *Station) edgeText() (text string, bad bool) {
 	if _, block := s.ctx.Selected(); block != "" {
 		text = "Properties of " + block
 	}
-	n := len(s.findings.list)
-	for _, f := range s.findings.list {
-		bad = bad || f.Level == circuit.Stops || f.Level == circuit.Warns
-	}
-	return text + fmt.Sprintf(" · findings: %d", n), bad
+	t := circuit.TallyOf(s.findings.list)
+	return text + " · findings: " + t.String(), t.Faults+t.ToMend > 0
 }
 
 // card is the paper that a sheet lies on, with the name of its circuit.

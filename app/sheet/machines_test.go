@@ -11,7 +11,6 @@ import (
 	"time"
 
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
 	"barlitre/audit"
@@ -289,8 +288,8 @@ func TestWhatIsAskedOfAMachine(t *testing.T) {
 	b.Select(1, "M1")
 	var shown strings.Builder
 	for _, o := range b.s.panel.asked.content.Objects {
-		if l, ok := o.(*widget.Label); ok {
-			shown.WriteString(l.Text + "\n")
+		if l, ok := o.(*widgets.Text); ok {
+			shown.WriteString(l.DumpText() + "\n")
 		}
 	}
 	n := 0

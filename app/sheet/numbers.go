@@ -22,7 +22,7 @@ type numberRow struct {
 	block   string
 	more    *link
 	extra   []*fieldRow
-	about   *widget.Label
+	about   *widgets.Text
 	drop    *link // takes the value out
 	beside  *besideRow
 }
@@ -145,7 +145,7 @@ func (r *numberRow) take(text string) error {
 		return err
 	}
 	if bad := r.param.CheckValue(circuit.Value{SI: si, Unit: u, Low: math.NaN(), High: math.NaN()}); bad != "" {
-		return errors.New(r.p.s.ctx.Local(lower(r.param.Title) + " " + bad))
+		return errors.New(r.p.s.ctx.Local(circuit.InSentence(r.param.Title) + " " + bad))
 	}
 	return r.p.set(r.target, units.FileText(si, u))
 }

@@ -293,7 +293,7 @@ func (p *panel) titles() (title, sub string) {
 	}
 	sub = b.Kind
 	if k := circuit.KindNamed(b.Kind); k != nil {
-		sub = lower(k.Title)
+		sub = circuit.InSentence(k.Title)
 	}
 	if n := len(p.many); n > 1 {
 		return strings.Join(p.many, ", "), fmt.Sprintf("%d of kind %s · %s · edited together", n, sub, c.Name)

@@ -2,21 +2,10 @@ package sheet
 
 import (
 	"slices"
-	"unicode"
-	"unicode/utf8"
 
 	"barlitre/audit"
 	"barlitre/circuit"
 )
-
-// lower makes a title part of a sentence; an abbreviation stays as it is.
-func lower(s string) string {
-	first, n := utf8.DecodeRuneInString(s)
-	if second, _ := utf8.DecodeRuneInString(s[n:]); unicode.IsUpper(second) {
-		return s
-	}
-	return string(unicode.ToLower(first)) + s[n:]
-}
 
 // blockRows makes the rows of a block by section: what was given or must be, and when asked for what is left at its
 // default.
@@ -92,7 +81,7 @@ func (p *panel) paramRow(circuitName, block string, q *circuit.Param) row {
 	if q.Default == "" && !q.Need {
 		options = append([]string{none}, options...)
 	}
-	r := &choiceRow{selectRow: newSelectRow(p, q.Title, "field."+q.Key, target, options), param: q}
+	r := &choiceRow{selectRow: newSelectRow(p, q.Title, "field."+q.Key, target, options, q.NameOf), param: q}
 	if q.Type == circuit.AxisRef {
 		p.axisChoices(r.selectRow, circuitName, block, q, target, options)
 	}

@@ -16,7 +16,7 @@ func (e *editor) blockLines(id string) []string {
 	}
 	out := []string{id}
 	if k := circuit.KindNamed(b.Kind); k != nil {
-		out[0] += " · " + lower(k.Title)
+		out[0] += " · " + circuit.InSentence(k.Title)
 	}
 	if t := e.heatText(id); t != "" {
 		out = append(out, t)

@@ -1,6 +1,8 @@
 package sheet
 
 import (
+	"slices"
+
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/container"
@@ -22,8 +24,8 @@ func (tight) Layout(objects []fyne.CanvasObject, size fyne.Size) {
 			continue
 		}
 		h := o.MinSize().Height
-		if l, ok := o.(*widget.Label); ok {
-			if l.Text == "" {
+		if l, ok := o.(*widgets.Text); ok {
+			if l.DumpText() == "" {
 				o.Resize(fyne.NewSize(size.Width+2*t, h))
 				o.Move(fyne.NewPos(-t, y))
 				continue
@@ -46,8 +48,8 @@ func (tight) MinSize(objects []fyne.CanvasObject) fyne.Size {
 			continue
 		}
 		s := o.MinSize()
-		if l, ok := o.(*widget.Label); ok {
-			if l.Text == "" {
+		if l, ok := o.(*widgets.Text); ok {
+			if l.DumpText() == "" {
 				continue
 			}
 			s.Height -= t
@@ -113,8 +115,8 @@ type base struct {
 	title   *canvas.Text
 	unit    *canvas.Text
 	head    *fyne.Container
-	note    *widget.Label // hint, or why a value was refused
-	warn    *widget.Label // what the findings say of it
+	note    *widgets.Text // hint, or why a value was refused
+	warn    *widgets.Text // what the findings say of it
 	content *fyne.Container
 }
 
@@ -128,9 +130,9 @@ func newBase(p *panel, title, target string) *base {
 }
 
 // label makes a small wrapped label as wide as the panel.
-func (p *panel) label(i widget.Importance) *widget.Label {
-	l := widget.NewLabel("")
-	l.Wrapping, l.Importance, l.SizeName = fyne.TextWrapWord, i, theme.SizeNameCaptionText
+func (p *panel) label(i widget.Importance) *widgets.Text {
+	l := widgets.Wrapped("")
+	l.Importance, l.SizeName = i, theme.SizeNameCaptionText
 	l.Resize(fyne.NewSize(p.width()+2*labelTrim(), 10))
 	return l
 }
@@ -146,13 +148,12 @@ func (b *base) say(text string, bad bool) {
 	if bad {
 		b.note.Importance, text = widget.DangerImportance, "⚠ "+text
 	}
-	b.note.Text = text
-	b.note.Refresh()
+	b.note.SetText(text)
 }
 
 // warnOf shows what the findings say of a parameter.
 func (b *base) warnOf(text string) {
-	if b.warn.Text != text {
+	if b.warn.DumpText() != text {
 		b.warn.SetText(text)
 	}
 }
@@ -236,14 +237,22 @@ type selectRow struct {
 	value   func() (selected, hint string)
 	options func() []string                 // nil where they stay the same
 	pick    func(text string) (bool, error) // of what is no value; nil where there is none
+	called  func(word string) string        // what a word of the file is called in the list
 	filling bool
 }
 
-func newSelectRow(p *panel, title, name, target string, options []string) *selectRow {
-	r := &selectRow{base: newBase(p, title, target)}
+func newSelectRow(p *panel, title, name, target string, words []string, called func(string) string) *selectRow {
+	r := &selectRow{base: newBase(p, title, target), called: called}
+	options := make([]string, len(words))
+	for i, w := range words {
+		options[i] = called(w)
+	}
 	r.sel = widgets.NewSelect(options, func(text string) {
 		if r.filling {
 			return
+		}
+		if i := slices.Index(options, text); i >= 0 {
+			text = words[i]
 		}
 		change := func() error {
 			if r.pick != nil {
@@ -279,6 +288,7 @@ func (r *selectRow) fill() {
 	r.filling = true
 	defer func() { r.filling = false }()
 	selected, hint := r.value()
+	selected = r.called(selected)
 	if r.options != nil {
 		r.sel.Options = r.options()
 	}

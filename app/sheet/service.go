@@ -3,7 +3,6 @@ package sheet
 import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/widgets"
 	"barlitre/audit/figures"
@@ -14,7 +13,7 @@ import (
 type service struct {
 	p       *panel
 	figure  *widgets.Figure
-	verdict *widget.Label
+	verdict *widgets.Text
 	content *fyne.Container
 	shown   figures.Service
 }
@@ -22,8 +21,7 @@ type service struct {
 const serviceWidth = 250
 
 func newService(p *panel) *service {
-	v := &service{p: p, verdict: widget.NewLabel("")}
-	v.verdict.Wrapping = fyne.TextWrapWord
+	v := &service{p: p, verdict: widgets.Wrapped("")}
 	v.figure = widgets.Name(widgets.NewFigure(fyne.NewSize(100, 0), v.draw), "sheet.service")
 	v.content = container.New(tight{}, v.figure, v.verdict)
 	return v

@@ -59,9 +59,9 @@ func (p *panel) valueText(b *circuit.Block, q *circuit.Param) string {
 	if q.Type != circuit.Number {
 		switch w := b.Word(q.Key); {
 		case w != "":
-			return w
+			return q.NameOf(w)
 		case q.Default != "":
-			return "(" + q.Default + ")"
+			return "(" + q.NameOf(q.Default) + ")"
 		}
 		return none
 	}

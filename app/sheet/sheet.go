@@ -61,6 +61,7 @@ func (s *Station) Help() string { return helpText }
 
 // Changed brings in what changed.
 func (s *Station) Changed(w station.What) {
+	s.findings.opened = s.findings.opened || w&station.Everything == station.Everything
 	if w == station.Advice {
 		s.findings.reload()
 		return
@@ -113,15 +114,8 @@ func (s *Station) Mend() bool {
 	if len(s.panel.drafts) > 0 {
 		return true
 	}
-	if len(s.ctx.Doc().Faults(s.ctx.System())) > 0 {
-		return true
-	}
-	for _, f := range s.ctx.Doc().Findings() {
-		if f.Circuit != "" && (f.Level == circuit.Stops || f.Level == circuit.Warns) {
-			return true
-		}
-	}
-	return false
+	list, _ := s.ctx.Doc().Listed(s.ctx.System())
+	return slices.ContainsFunc(list, func(f circuit.Finding) bool { return f.Circuit != "" && f.ToMend() })
 }
 
 // bringCircuits gives each sheet its circuit. A sheet is laid out anew only when the

@@ -159,7 +159,7 @@ func TestOriginChoiceAndNote(t *testing.T) {
 	b.Select(0, "")
 	for _, row := range b.s.panel.rows {
 		if s, ok := row.(*selectRow); ok && s.target == "As found/pump_at_rest" {
-			s.sel.SetSelected("stop")
+			s.sel.SetSelected("switched off")
 		}
 	}
 	if got := b.doc.File().Circuits[0].PumpAtRest; got != circuit.Stop {

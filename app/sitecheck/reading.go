@@ -17,7 +17,7 @@ type reading struct {
 	state, point string
 	field        *widgets.Field
 	model        string
-	note         *widget.Label
+	note         *widgets.Text
 	content      fyne.CanvasObject
 }
 
@@ -28,8 +28,7 @@ func (p *Page) reading(pt sitecheck.Point, state string) *reading {
 	}
 	r.field = widgets.Name(widgets.NewField("", func(text string) error { return p.put(r, pt, text) }), "sitecheck."+state+"."+pt.Name)
 	r.field.Scroll = fyne.ScrollHorizontalOnly
-	r.note = widgets.Name(widget.NewLabel(""), "sitecheck."+state+"."+pt.Name+".says")
-	r.note.Wrapping = fyne.TextWrapWord
+	r.note = widgets.Wrapped("sitecheck." + state + "." + pt.Name + ".says")
 	r.note.Importance = widget.LowImportance
 	r.field.Note = r.note
 	r.content = container.NewVBox(r.field, r.note)

@@ -17,7 +17,7 @@ import (
 type Field struct {
 	widget.Entry
 	Commit func(text string) error // nil error = taken
-	Note   *widget.Label           // where a refusal is said; may be nil
+	Note   *Text                   // where a refusal is said; may be nil
 	value  string                  // what the model has
 	hint   string
 	bad    bool
@@ -57,7 +57,7 @@ func (f *Field) say(text string) {
 	if text == "" {
 		text = f.hint
 	}
-	if f.Note.Text != text {
+	if f.Note.DumpText() != text {
 		f.Note.SetText(text)
 	}
 	want := widget.LowImportance

@@ -53,7 +53,7 @@ type Table struct {
 	Commit   func(row, col int, text string) error // takes what was typed
 	Paste    func(row, col int, block [][]string)  // takes a block from the clipboard, its corner at the cell
 	Key      func(k fyne.KeyName) bool             // is offered the keys that the table has no use for; may be nil
-	Note     *widget.Label                         // where refusals are said; may be nil
+	Note     *Text                                 // where refusals are said; may be nil
 	Hint     func(row, col int) string             // what Note says else
 	Empty    string                                // what is said without rows
 	Outer    func(*fyne.ScrollEvent)               // takes the wheel where there is nothing to scroll

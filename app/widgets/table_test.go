@@ -141,7 +141,7 @@ func TestTitlesAreSkipped(t *testing.T) {
 func TestTypingInCells(t *testing.T) {
 	table, win := tableOf(t, 4, 3, 400, 300)
 	got := map[string]string{}
-	table.Note = widget.NewLabel("")
+	table.Note = Wrapped("")
 	table.Editable = func(_, col int) bool { return col > 0 }
 	table.Commit = func(row, col int, text string) error {
 		if strings.Contains(text, "no") {

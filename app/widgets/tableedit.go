@@ -196,7 +196,7 @@ func (t *Table) say() {
 	} else if t.Hint != nil {
 		text = t.Hint(t.selRow, t.selCol)
 	}
-	if t.Note.Text != text || t.Note.Importance != importance {
+	if t.Note.DumpText() != text || t.Note.Importance != importance {
 		t.Note.Importance = importance
 		t.Note.SetText(text)
 	}

@@ -3,7 +3,6 @@ package cure
 import (
 	"fmt"
 	"math"
-	"strings"
 
 	"barlitre/audit"
 	"barlitre/circuit"
@@ -25,18 +24,18 @@ func missingValue(p *patient) *Cure {
 	switch {
 	case q.Type == circuit.AxisRef && len(p.file.Axes) == 1:
 		axis := p.file.Axes[0].Name
-		return p.set(fmt.Sprintf("Set %s of %s: %s", lower(q.Title), p.Block, axis), q.Key, axis)
+		return p.set(fmt.Sprintf("Set %s of %s: %s", circuit.InSentence(q.Title), p.Block, axis), q.Key, axis)
 	case q.Key == "axis" && len(p.file.Axes) == 0:
 		name, kind, _ := p.file.NewAxis(p.b)
 		return &Cure{Name: fmt.Sprintf("Make axis %s for %s", name, p.Block), Told: "Its name can be changed, and its motion said, on the page Duty.",
 			Mend: func(f *audit.File) error { return f.GiveAxis(p.target(q.Key), name, kind) }}
 	case q.Key != "hold" && q.Type != circuit.Number:
-		return &Cure{Name: "Choose " + lower(q.Title), Field: q.Key}
+		return &Cure{Name: "Choose " + circuit.InSentence(q.Title), Field: q.Key}
 	case q.Key != "hold":
-		return &Cure{Name: "Type " + lower(q.Title), Field: q.Key}
+		return &Cure{Name: "Type " + circuit.InSentence(q.Title), Field: q.Key}
 	}
 	for _, word := range q.Choices {
-		c := p.set("Set hold: "+word, "hold", word)
+		c := p.set("Let the "+word+" hold it", "hold", word)
 		c.Told = fmt.Sprintf("%s is held by the %s; correct that if the machine has something else.", p.Block, word)
 		if mended := *p.file; c.Mend(&mended) == nil && !p.stopsAt(&mended) {
 			return c
@@ -68,24 +67,23 @@ func (p *patient) stopsAt(f *audit.File) bool {
 	return false
 }
 
-func lower(title string) string { return strings.ToLower(title[:1]) + title[1:] }
-
 // needsNoValue drops a value.
 func needsNoValue(p *patient) *Cure {
-	if q := circuit.KindNamed(p.b.Kind).Param(p.Parameter); q == nil || q.Need {
+	q := circuit.KindNamed(p.b.Kind).Param(p.Parameter)
+	if q == nil || q.Need {
 		return nil
 	}
-	return &Cure{Name: fmt.Sprintf("Drop %s of %s", p.Parameter, p.Block), Mend: func(f *audit.File) error { return f.Drop(p.target(p.Parameter)) }}
+	return &Cure{Name: fmt.Sprintf("Take out of %s: %s", p.Block, circuit.InSentence(q.Title)), Mend: func(f *audit.File) error { return f.Drop(p.target(p.Parameter)) }}
 }
 
-func heldByValve(p *patient) *Cure { return p.set("Set hold of "+p.Block+": valve", "hold", "valve") }
+func heldByValve(p *patient) *Cure { return p.set("Let the valve hold "+p.Block, "hold", "valve") }
 
 // heldOtherwise takes what the first actuator of the same axis is held by.
 func heldOtherwise(p *patient) *Cure {
 	for i := range p.e.Blocks {
 		b := &p.e.Blocks[i]
 		if b.ID != p.Block && b.Word("axis") == p.b.Word("axis") && b.Word("hold") != "" {
-			return p.set(fmt.Sprintf("Set hold of %s: %s", p.Block, b.Word("hold")), "hold", b.Word("hold"))
+			return p.set(fmt.Sprintf("Let the %s hold %s", b.Word("hold"), p.Block), "hold", b.Word("hold"))
 		}
 	}
 	return nil
@@ -93,7 +91,7 @@ func heldOtherwise(p *patient) *Cure {
 
 // restNotSaid lets the pumps go on turning, which leaves out nothing that they draw.
 func restNotSaid(p *patient) *Cure {
-	return &Cure{Name: "Let its pumps keep turning at rest", Told: "pump_at_rest is keep; say stop or unload where the machine does so.",
+	return &Cure{Name: "Let its pumps keep turning at rest", Told: "They keep turning while every axis stands; say switched off or unloaded where the machine does so.",
 		Mend: func(f *audit.File) error { return f.Set(p.e.Name+"/pump_at_rest", string(circuit.Keep)) }}
 }
 
@@ -110,7 +108,7 @@ func reliefTooLow(p *patient) *Cure {
 		return nil
 	}
 	text := settingText(circuit.ReliefAbove(held) + now.SI - crack)
-	return &Cure{Name: fmt.Sprintf("Raise %s of %s to %s", p.Parameter, p.Block, text),
+	return &Cure{Name: fmt.Sprintf("Raise %s: %s %s", p.Block, circuit.InSentence(circuit.KindNamed(p.b.Kind).Param(p.Parameter).Title), text),
 		Told: p.Block + " is raised on paper only: no relief valve of a machine may be set so before its ratings and its maker permit it.",
 		Mend: func(f *audit.File) error { return f.Set(p.target(p.Parameter), text) }}
 }

@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"barlitre/audit/pen"
+	"barlitre/machines/units"
 )
 
 // ResidualPoint is what a fit leaves at a point, in efficiency points.
@@ -59,6 +60,6 @@ func (f Residuals) Draw(p pen.Pen, w, h float64, pal Palette) {
 	title(p, f.Title, fw, pal.Ink)
 	p.Text(pen.Pt{Y: headSize + textSize + 3}, pen.Shorten("law less measured, efficiency points; band: rms "+number(f.RMS, 2), smallSize, false, fw), smallSize, pal.Secondary, pen.Left, false)
 	axis(p, x0, x0+pw, y0+ph, 12, 0, 1.05*toX, scaledUnit(thousands(1.05*toX), f.XUnit), pal)
-	text := "over " + f.X + "; tint: " + f.Group + " " + number(lo, 0) + " to " + number(hi, 0) + " " + f.GroupUnit
+	text := "over " + f.X + "; tint: " + f.Group + " " + units.Range(number(lo, 0), number(hi, 0)) + " " + f.GroupUnit
 	p.Text(pen.Pt{Y: y0 + ph + axisHeight + 12}, pen.Shorten(text, smallSize, false, fw), smallSize, pal.Secondary, pen.Left, false)
 }

@@ -62,7 +62,8 @@ type Item struct {
 	Basis    string
 	Price    string
 	Note     string
-	Cure     string // as the price was computed
+	Cure     string // as the price was computed, for the command line
+	Edits    Cure   // the same
 	Block    string // to be shown, "" where it is the machine as a whole
 	Habit    bool
 }
@@ -196,7 +197,7 @@ func (w words) figures(name string, s Saving, before, after Year, with string) [
 func (e Effort) short() string { return [...]string{"nothing", "service", "a part"}[e] }
 
 func (w words) item(n int, x *Step) Item {
-	it := Item{Number: n, Head: x.Name(), Text: x.Text, Evidence: x.Evidence, Do: x.Do, Caution: x.Caution, Basis: x.Basis, Note: x.Note(), Block: x.Block, Habit: x.Habit, Cure: x.Cure.String()}
+	it := Item{Number: n, Head: x.Name(), Text: x.Text, Evidence: x.Evidence, Do: x.Do, Caution: x.Caution, Basis: x.Basis, Note: x.Note(), Block: x.Block, Habit: x.Habit, Cure: x.Cure.String(), Edits: x.Cure}
 	if x.Duty != "" {
 		it.Where = x.Duty
 		if x.Time > 0 {

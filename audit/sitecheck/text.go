@@ -86,7 +86,7 @@ func (p *Plan) shown(pt Point, v Value) string {
 	}
 	u := units.Preferred(pt.Dim, p.System)
 	if v.High-v.Low > spread(pt, v.Mean) && pt.Dim == units.Pressure {
-		return number(u.FromSI(math.Max(v.Low, 0))) + " to " + number(u.FromSI(v.High)) + "\u202f" + u.Label()
+		return units.Range(number(u.FromSI(math.Max(v.Low, 0))), number(u.FromSI(v.High))) + "\u202f" + u.Label()
 	}
 	return number(u.FromSI(v.Mean)) + "\u202f" + u.Label()
 }

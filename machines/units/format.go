@@ -117,3 +117,20 @@ func shortest(si float64, u Unit) float64 {
 	}
 	return x
 }
+
+// Range writes two written numbers as "3.8 to 6.2", and as one where they round to the same.
+func Range(low, high string) string {
+	if low == high {
+		return low
+	}
+	return low + " to " + high
+}
+
+// Around writes a written number with its range, "4.7 years (3.8 to 6.2)"; the number alone where all round to the same.
+// The unit may be "", where the numbers have their own.
+func Around(likely, unit, low, high string) string {
+	if low == likely && high == likely {
+		return likely + unit
+	}
+	return likely + unit + " (" + Range(low, high) + ")"
+}

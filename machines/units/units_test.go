@@ -258,6 +258,22 @@ func TestNumber(t *testing.T) {
 	}
 }
 
+// A range that rounds to one number is not printed as a range.
+func TestRanges(t *testing.T) {
+	for _, x := range []struct{ got, want string }{
+		{Range("3.8", "6.2"), "3.8 to 6.2"},
+		{Range("1.0", "1.0"), "1.0"},
+		{Around("4.7", " years", "3.8", "6.2"), "4.7 years (3.8 to 6.2)"},
+		{Around("1.0", " years", "1.0", "1.1"), "1.0 years (1.0 to 1.1)"},
+		{Around("1.0", " years", "1.0", "1.0"), "1.0 years"},
+		{Around("2.0", "", "1.0", "1.0"), "2.0 (1.0)"},
+	} {
+		if x.got != x.want {
+			t.Errorf("%q, want %q", x.got, x.want)
+		}
+	}
+}
+
 func FuzzParse(f *testing.F) {
 	for _, s := range []string{"160 bar", "45 cm³/rev", "10 bar per 100 L/min", "0.18 EUR/kWh", "1,5", "−5 °C", "1e999", " per ", "1/", "((", "1 N/(/)"} {
 		f.Add(s, 2)

@@ -36,7 +36,7 @@ type clockRows struct {
 	first, with    *choice
 	within, offset *widgets.Field
 	found, given   *fyne.Container
-	how            *widget.Label
+	how            *widgets.Text
 }
 
 func newClockRows(p *Page, s *source, name string) *clockRows {

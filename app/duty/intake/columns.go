@@ -230,7 +230,7 @@ func (c *columns) row(name, first string) widgets.TableRow {
 
 func (c *columns) fillDetails() {
 	show(c.details, c.selected != "")
-	setText(c.title, "Column "+c.selected)
+	c.title.SetText("Column " + c.selected)
 	x := logger.Channel{Column: c.selected, Leave: true}
 	if y := c.p.src().recipe.Channel(c.selected); y != nil {
 		x = *y

@@ -28,11 +28,11 @@ type cyclesTab struct {
 	which    *choice
 	from, to *widgets.Field
 	span     *fyne.Container
-	spread   *widget.Label
+	spread   *widgets.Text
 	states   *widgets.Figure
 	stack    *widgets.Picture
 	table    *widgets.Table
-	none     *widget.Label
+	none     *widgets.Text
 }
 
 // The parts of a recording that may make the duty.
@@ -208,13 +208,14 @@ func (c *cyclesTab) spreadText() string {
 	if r == nil || len(r.Cycles) == 0 {
 		return "A recorded duty is one stretch of time, and its mean is taken. Set under Duty that it repeats if it does."
 	}
+	period := units.Around(c.p.seconds(r.Period), " on average", c.p.seconds(r.Length.Least), c.p.seconds(r.Length.Most))
 	if len(c.p.out.works) == 0 {
-		return fmt.Sprintf("%d cycles of %s on average (%s to %s), by what moves. Their energy stands here once an axis has a load too.", len(r.Cycles), c.p.seconds(r.Period), c.p.seconds(r.Length.Least), c.p.seconds(r.Length.Most))
+		return fmt.Sprintf("%d cycles of %s, by what moves. Their energy stands here once an axis has a load too.", len(r.Cycles), period)
 	}
 	kJ := func(j float64) string { return c.p.ctx.Text(j, units.Energy, 3) }
 	e := r.Energy
-	text := fmt.Sprintf("%d cycles of %s on average (%s to %s). Work a cycle, out less back: mean %s, from %s to %s, eight in ten between %s and %s.",
-		len(r.Cycles), c.p.seconds(r.Period), c.p.seconds(r.Length.Least), c.p.seconds(r.Length.Most), kJ(e.Mean), kJ(e.Least), kJ(e.Most), kJ(e.P10), kJ(e.P90))
+	text := fmt.Sprintf("%d cycles of %s. Work a cycle, out less back: mean %s, from %s to %s, eight in ten between %s and %s.",
+		len(r.Cycles), period, kJ(e.Mean), kJ(e.Least), kJ(e.Most), kJ(e.P10), kJ(e.P90))
 	if e.Mean != 0 {
 		text += fmt.Sprintf(" Standard deviation %.2g %%.", 100*e.Deviation/e.Mean)
 	}

@@ -16,7 +16,7 @@ type findings struct {
 	p       *Page
 	content fyne.CanvasObject
 	list    *fyne.Container
-	head    *widget.Label
+	head    *widgets.Text
 	shows   string
 }
 

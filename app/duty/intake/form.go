@@ -27,7 +27,7 @@ type form struct {
 	head, unitsRow, first, interval, wide *widgets.Field
 	rows                                  []fyne.CanvasObject // of order, unit, interval, widths and the second column
 	raw, read                             *widgets.Table
-	wrong                                 *widget.Label
+	wrong                                 *widgets.Text
 }
 
 var (

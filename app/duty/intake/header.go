@@ -76,13 +76,13 @@ func (h *header) fill() {
 			title += " from " + rec.Start
 		}
 	}
-	setText(h.title, p.ctx.Local(title))
+	h.title.SetText(p.ctx.Local(title))
 	text, importance := h.says()
 	if h.state.Importance != importance {
 		h.state.Importance = importance
 		h.state.Refresh()
 	}
-	setText(h.state, p.ctx.Local(text))
+	h.state.SetText(p.ctx.Local(text))
 	show(h.running, p.job.says != "")
 	show(h.again, p.job.says == "" && p.job.interrupted)
 	h.bar.SetValue(p.job.share)

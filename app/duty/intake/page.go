@@ -243,16 +243,16 @@ func show(o fyne.CanvasObject, on bool) {
 	}
 }
 
-func setText(l *widget.Label, text string) {
-	if l.Text != text {
+func setText(l *widgets.Text, text string) {
+	if l.DumpText() != text {
 		l.SetText(text)
 	}
 }
 
 // say is a text over several lines.
-func say(text string, importance widget.Importance, bold bool) *widget.Label {
-	l := widget.NewLabelWithStyle(text, fyne.TextAlignLeading, fyne.TextStyle{Bold: bold})
-	l.Wrapping = fyne.TextWrapWord
-	l.Importance = importance
+func say(text string, importance widget.Importance, bold bool) *widgets.Text {
+	l := widgets.Wrapped("")
+	l.TextStyle.Bold, l.Importance = bold, importance
+	l.SetText(text)
 	return l
 }

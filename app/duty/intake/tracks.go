@@ -24,14 +24,14 @@ type tracks struct {
 	add     *choice
 	axis    *widgets.Field
 	turns   *widgets.Check
-	works   *widget.Label
+	works   *widgets.Text
 	plot    *widgets.ClockPlot
 	ground  *canvas.Rectangle
 }
 
 // trackRows are the rows of one track.
 type trackRows struct {
-	says, fault *widget.Label
+	says, fault *widgets.Text
 	picks       map[string]*choice        // of channels, by key
 	fields      map[string]*widgets.Field // of numbers, by key
 }
