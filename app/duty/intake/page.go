@@ -143,6 +143,7 @@ func (p *Page) Open(path string) error {
 	}
 	p.begin(s)
 	p.head.name.SetValue(p.freeName(path), "")
+	p.head.hours.SetValue("", "")
 	p.at = fileTab
 	if len(p.blocking()) == 0 {
 		p.at = tracksTab // what comes of it; the other sides tell how
@@ -162,6 +163,7 @@ func (p *Page) Reopen(i int) error {
 	p.begin(list...)
 	p.again, p.part, p.tracks = f.Duties[i].Name, im.Part, im.TracksOf()
 	p.head.name.SetValue(p.again, "")
+	p.head.hours.SetValue(p.ctx.Local(hoursOf(f.Duties[i].Hours)), "")
 	p.at = tracksTab
 	p.read()
 	return nil
@@ -177,6 +179,7 @@ func (p *Page) begin(list ...*source) {
 	p.job.cancel()
 	p.sources, p.hand, p.rec = list, 0, nil
 	p.tracks, p.axes, p.part, p.again, p.known, p.out = nil, nil, logged.Part{}, "", map[string]bool{}, outcome{}
+	p.head.year.picked = false
 }
 
 // freeName is the name of the file, or with a number behind it where a duty has it.
