@@ -192,6 +192,7 @@ func (f *Frame) reset() {
 	f.clock, f.duty, f.circuit, f.block, f.beside = 0, 0, -1, "", ""
 	f.solution, f.solved = f.doc.Solution()
 	if file := f.doc.File(); file != nil && len(file.Duties) > 0 {
+		f.duty = file.DutiesByYear()[0]
 		f.clock = f.firstMotion()
 	}
 	f.changed(station.Everything)
