@@ -81,9 +81,11 @@ func New(app fyne.App, opt document.Options, stations ...func(station.Context) s
 	f.win.Resize(f.settings.size())
 	f.win.SetCloseIntercept(f.quit)
 	f.win.SetOnDropped(func(_ fyne.Position, uris []fyne.URI) {
-		if len(uris) > 0 {
-			f.dropped(uris[0].Path())
+		var paths []string
+		for _, u := range uris {
+			paths = append(paths, u.Path())
 		}
+		f.dropped(paths...)
 	})
 	f.dumper = newDumper(f)
 	countFrames()

@@ -53,7 +53,7 @@ func (l *loggers) fill() {
 
 func (l *loggers) rebuild() {
 	p := l.p
-	l.list.Objects, l.clocks = []fyne.CanvasObject{say("A recording that the logger split goes on in further files. What another logger recorded at the same time stands beside it once its clock is set; its channels then make tracks as well.", widget.MediumImportance, false)}, nil
+	l.list.Objects, l.clocks = []fyne.CanvasObject{say("A recording that the logger split goes on in further files. What another logger recorded at the same time stands beside it once its clock is set; its channels then make tracks as well. Several files can be dropped here at once: those with the columns of a logger go on there, others are further loggers.", widget.MediumImportance, false)}, nil
 	for i := range p.sources {
 		l.list.Add(l.card(i))
 	}
