@@ -32,6 +32,7 @@ type importCall struct {
 	rate    []string // two channels
 	cycles  []string // channels that move, then those that are held
 	held    []string
+	also    []*importAlso
 }
 
 func parseImport(args []string, errs io.Writer) (importCall, error) {
@@ -57,6 +58,8 @@ func parseImport(args []string, errs io.Writer) (importCall, error) {
 	})
 	f.Func("cycles", "find cycles and states by `CHANNEL,...` that move", func(s string) error { c.cycles = strings.Split(s, ","); return nil })
 	f.Func("held", "with -cycles: `CHANNEL,...` that are held, such as pressures", func(s string) error { c.held = strings.Split(s, ","); return nil })
+	f.Func("also", "set the channels of another logger beside these: `FILE`, or FILE,FILE,... where it was split", c.addAlso)
+	f.Func("clock", "how the clock of the -also before it is set: `CHANNEL=ITS CHANNEL` that both logged, or a time that is added to its times, as in -6.8s", c.setClock)
 	files, err := parseMixed(f, args)
 	switch {
 	case err != nil:
@@ -110,7 +113,7 @@ func importFile(args []string, out, errs io.Writer) int {
 	return exitOK
 }
 
-func (c importCall) run(out, errs io.Writer) error {
+func (c *importCall) run(out, errs io.Writer) error {
 	file, err := logger.OpenFiles(c.files...)
 	if err != nil {
 		return err
@@ -125,8 +128,11 @@ func (c importCall) run(out, errs io.Writer) error {
 			return fmt.Errorf("%s: %w", c.told, err)
 		}
 	}
+	if err := c.openAlso(r); err != nil {
+		return err
+	}
 	for _, a := range c.answers {
-		if err := r.Answer(a[0], a[1]); err != nil {
+		if err := c.answered(&r, a[0], a[1]); err != nil {
 			return err
 		}
 	}
@@ -138,10 +144,7 @@ func (c importCall) run(out, errs io.Writer) error {
 	if p, err := file.Preview(r, c.rows); err == nil {
 		printPreview(out, r, p)
 	}
-	for _, q := range r.Open() {
-		heading(out, "Question")
-		wrap(out, fmt.Sprintf("%s: %s (-answer \"%s=…\")", q.Field, q.Text, q.Field))
-	}
+	printQuestions(out, r)
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
 	defer stop()
 	rec, err := file.Import(ctx, r, progressLine(errs))
@@ -149,6 +152,10 @@ func (c importCall) run(out, errs io.Writer) error {
 		return err
 	}
 	printRecording(out, rec)
+	setup := audit.Setup{File: filepath.Base(c.files[0]), More: basesOf(c.files[1:]), SHA256: rec.SHA256, Recipe: r}
+	if rec, setup.Also, err = c.beside(ctx, rec, out, errs); err != nil {
+		return err
+	}
 	if len(c.rate) > 0 {
 		if err := printRate(out, rec, c.rate); err != nil {
 			return err
@@ -160,14 +167,24 @@ func (c importCall) run(out, errs io.Writer) error {
 		}
 	}
 	if c.yaml {
-		text, err := audit.Setup{File: filepath.Base(c.files[0]), More: basesOf(c.files[1:]), SHA256: rec.SHA256, Recipe: r}.Text()
+		text, err := setup.Text()
 		if err != nil {
 			return err
 		}
 		heading(out, "For a duty of an audit file")
 		fmt.Fprintln(out, text)
+		fmt.Fprintln(out)
+		wrap(out, "Give the duty its hours a year besides, and 0 h to a duty that it stands in place of: the year has both otherwise.")
 	}
 	return nil
+}
+
+// printQuestions puts what a file leaves open.
+func printQuestions(w io.Writer, r logger.Recipe) {
+	for _, q := range r.Open() {
+		heading(w, "Question")
+		wrap(w, fmt.Sprintf("%s: %s (-answer \"%s=…\")", q.Field, q.Text, q.Field))
+	}
 }
 
 func basesOf(paths []string) (names []string) {

@@ -30,7 +30,7 @@ var commands = []command{
 	{"sitecheck", "FILE... [-set ...] [-units metric|us|si]", "print what to measure at the machine, and what the readings in the file say", siteCheck},
 	{"sheet", "FILE -pdf OUT [-circuit CIRCUIT]... [-duty DUTY] [-at TIME] [-paper A4|A3] [-cycle] [-hide SIGNS] [-units metric|us|si]", "print the circuits as they are drawn, with their results and a title block", printSheets},
 	{"fit", "POINTS.csv [-displacement QUANTITY] [-viscosity QUANTITY] [-bulk QUANTITY] [-png DIR]", "fit the loss coefficients of a pump or motor to measured points", fit},
-	{"import", "RECORDING.csv [-rows N] [-answer FIELD=CHOICE]... [-choose KEY=CHOICE]... [-rate EFFORT,FLOW] [-cycles CHANNEL,... [-held CHANNEL,...]] [-yaml]", "read the recording of a data logger: what it seems to be, what is wrong with it, whether it is fast enough, which cycles it holds", importFile},
+	{"import", "RECORDING.csv [-rows N] [-answer FIELD=CHOICE]... [-choose KEY=CHOICE]... [-rate EFFORT,FLOW] [-cycles CHANNEL,... [-held CHANNEL,...]] [-also FILE,... [-clock CHANNEL=CHANNEL|TIME]]... [-yaml]", "read the recording of a data logger: what it seems to be, what is wrong with it, whether it is fast enough, which cycles it holds", importFile},
 	{"blocks", "[KIND]", "list the kinds of block, or all that is known of one", blocks},
 }
 

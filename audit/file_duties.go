@@ -49,12 +49,7 @@ func (f *File) RenameDuty(old, name string) error {
 	d := f.draft()
 	err = d.one(d.src.put(d.duty(i), "name", encode(name, true)))
 	if state := f.StateOf(old); state != "" && err == nil {
-		uses := child(child(d.root, "calendar"), string(state))
-		key, _ := pair(uses, old)
-		if key == nil {
-			return fmt.Errorf("duty %q: %w", old, errLayout)
-		}
-		err = d.one(d.src.replace(key, uses.Column-1, encode(name, true)))
+		err = d.renameUse(child(child(d.root, "calendar"), string(state)), old, name)
 	}
 	return f.dutyEdit(d, i, err, func(g *File) bool { return g.dutyIndex(name) == i })
 }

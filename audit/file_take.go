@@ -54,6 +54,8 @@ type Taking struct {
 	Part   logged.Part
 	Axes   []duty.Axis       // that the file does not have yet
 	Keys   map[string]string // of a new duty, as SetDuty takes them
+
+	InPlaceOf string // the duty whose hours a year the new one takes, which stays without; "" = none
 }
 
 // TakenAlso is the recording of another logger that was read: its Files, Recipe and Clock count.
@@ -111,6 +113,9 @@ func (f *File) TakeIn(t Taking) error {
 				err = g.SetDuty(name, k, t.Keys[k])
 			}
 		}
+	}
+	if err == nil && t.InPlaceOf != "" {
+		err = g.HandHours(t.InPlaceOf, name)
 	}
 	if err == nil {
 		*f = g

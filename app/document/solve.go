@@ -30,6 +30,19 @@ func (d *Document) Current() bool {
 
 func (d *Document) current() bool { return d.solution != nil && d.solved == d.now.revision }
 
+// Settled returns the solution of the audit as it stands, with its oil temperatures, for
+// what is handed over: the one that is there, or it is worked out here, which may take a
+// while. It never is that of an earlier revision. The error is that of audit.Solve.
+func (d *Document) Settled(ctx context.Context, progress func(done, total int)) (*audit.Solution, error) {
+	d.mu.Lock()
+	s, file, current := d.solution, d.now.file, d.current()
+	d.mu.Unlock()
+	if current {
+		return s.Warm(ctx)
+	}
+	return audit.Solve(ctx, file, audit.Options{Progress: progress})
+}
+
 // Solving reports whether the present revision is being solved, and how far that is;
 // total is 0 until it is known.
 func (d *Document) Solving() (running bool, done, total int) {

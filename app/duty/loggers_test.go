@@ -8,7 +8,9 @@ import (
 	"strings"
 	"testing"
 
+	"barlitre/app/duty/intake"
 	"barlitre/app/station"
+	"barlitre/app/station/stationtest"
 	"barlitre/audit"
 	cycle "barlitre/circuit/duty"
 )
@@ -148,5 +150,53 @@ func TestLoggersThatDoNotFit(t *testing.T) {
 	click(t, f, "intake.logger2.remove")
 	if text := label("intake.title"); !strings.Contains(text, "100 rows") || strings.Contains(text, " and ") || strings.Contains(label("intake.state"), "fault") {
 		t.Errorf("%q, %q", text, label("intake.state"))
+	}
+}
+
+// Several files dropped at once go where they belong: one with the same columns goes on, one
+// with others is another logger with its clock. On the page of the loggers they are added, and
+// one that is there already, or cannot be read, leaves all as it was.
+func TestSeveralFilesAtOnce(t *testing.T) {
+	first, goesOn, other := loggerFiles(t)
+	check := func(f *stationtest.Frame) {
+		t.Helper()
+		if err := f.LastError(); err != nil {
+			t.Fatal(err)
+		}
+		if text := label("intake.logger1.says"); !strings.Contains(text, "301 rows") || !strings.Contains(text, "ram_v") {
+			t.Errorf("the recording: %q", text)
+		}
+		if text := label("intake.logger2.says"); !strings.Contains(text, "310 rows") || !strings.Contains(text, "ram_F") {
+			t.Errorf("the other logger: %q", text)
+		}
+		if text := label("intake.logger2.clock.says"); !strings.Contains(text, "ligned by p with p") {
+			t.Errorf("its clock: %q", text)
+		}
+	}
+	t.Cleanup(intake.Inline())
+	f := stationtest.Open(t, New, pressFile, nil)
+	s := f.Station.(*Station)
+	s.TakeIn(other, goesOn, first)
+	f.Settle(1190, 590)
+	check(f)
+	look(f, "intake-several")
+	s.TakeIn(goesOn)
+	if err := f.LastError(); err == nil || !strings.Contains(err.Error(), "day2.csv is there already") {
+		t.Error(err)
+	}
+	f.Failed = nil
+	s.TakeIn(first, filepath.Join(t.TempDir(), "gone.csv"))
+	if f.LastError() == nil || label("intake.logger2.says") == "" {
+		t.Error("a file that is not there was taken")
+	}
+
+	f, s = importing(t, pressFile, first)
+	click(t, f, "intake.tab.loggers")
+	s.TakeIn(goesOn, other)
+	f.Settle(1190, 590)
+	check(f)
+	click(t, f, "intake.tab.tracks")
+	if s.TakeIn(other); strings.Contains(label("intake.title"), "and day.csv") {
+		t.Errorf("dropped elsewhere it does not begin anew: %q", label("intake.title"))
 	}
 }

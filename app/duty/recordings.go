@@ -45,12 +45,23 @@ func (r *recordings) button(name string) fyne.CanvasObject {
 
 // PickRecording asks for the file of a logger.
 func (s *Station) PickRecording() {
-	s.ctx.PickFile("A data logger's recording", "Open", station.RecordingEndings, s.TakeIn)
+	s.ctx.PickFile("A data logger's recording", "Open", station.RecordingEndings, func(path string) { s.begin(path) })
 }
 
-// TakeIn opens the page with the file of a logger.
-func (s *Station) TakeIn(path string) {
-	if err := s.recordings.page.Open(path); err != nil {
+// TakeIn opens the page with the files of loggers, or adds them where it shows its loggers.
+func (s *Station) TakeIn(paths ...string) {
+	if r := s.recordings; r.open && r.page.AtLoggers() {
+		if err := r.page.Add(paths...); err != nil {
+			s.ctx.Fail(err)
+		}
+		return
+	}
+	s.begin(paths...)
+}
+
+// begin opens the page with the files of loggers.
+func (s *Station) begin(paths ...string) {
+	if err := s.recordings.page.Open(paths...); err != nil {
 		s.ctx.Fail(err)
 		return
 	}

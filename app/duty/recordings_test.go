@@ -161,6 +161,57 @@ func TestRecordingBecomesDuty(t *testing.T) {
 	}
 }
 
+// assumedFile has a duty that was assumed, and one that does not run in the year.
+const assumedFile = `format: barlitre/1
+title: Press
+oil: {temperature: 50 C, density: 870 kg/m3, viscosity: 40 mPa s}
+axes: {ram: linear}
+duties:
+- name: assumed
+  hours: 3000 h
+  points: {t: [0 s, 1 s], ram.speed: [0.1 m/s, 0.1 m/s], ram.load: [5 kN, 5 kN]}
+- name: spare
+  points: {t: [0 s, 1 s], ram.speed: [0.1 m/s, 0.1 m/s], ram.load: [5 kN, 5 kN]}
+circuits: []
+`
+
+// A recording stands in place of the one duty that has hours unless it is put beside the
+// others: the year does not have both without being asked. Either is one step of undo.
+func TestRecordingTakesHours(t *testing.T) {
+	const hour = 3600.0
+	for _, c := range []struct {
+		word, undo   string
+		old, newDuty float64
+	}{{"in place of assumed", "Take in press-shift.csv in place of assumed", 0, 3000 * hour}, {"beside the others", "Take in press-shift.csv", 3000 * hour, 8 * hour}} {
+		f, _ := importing(t, assumedFile, "../../samples/recordings/press-shift.csv")
+		if !strings.Contains(f.Dump(), "intake.year\tin place of assumed\t") {
+			t.Fatalf("in place of the one duty with hours is not what is offered:\n%s", f.Dump())
+		}
+		look(f, "intake-in-place-of")
+		choose(t, "intake.year", c.word)
+		if c.old > 0 {
+			put(t, "intake.hours", "8")
+			look(f, "intake-beside")
+		}
+		click(t, f, "intake.make")
+		if err := f.LastError(); err != nil {
+			t.Fatal(err)
+		}
+		d := f.Document.File().Duties
+		if len(d) != 3 || d[0].Hours != c.old || d[2].Hours != c.newDuty || f.Document.UndoName() != c.undo {
+			t.Errorf("%s: hours %g, %g, undo %q", c.word, d[0].Hours, d[2].Hours, f.Document.UndoName())
+		}
+		if f.Document.Undo(); len(f.Document.File().Duties) != 2 || f.Document.File().Duties[0].Hours != 3000*hour {
+			t.Errorf("%s: one undo does not bring the audit back", c.word)
+		}
+	}
+	two := strings.Replace(assumedFile, "- name: spare\n", "- name: spare\n  hours: 500 h\n", 1)
+	f, _ := importing(t, two, "../../samples/recordings/press-shift.csv")
+	if !strings.Contains(f.Dump(), "intake.year\tbeside the others\t") || !strings.Contains(label("intake.year.text"), "3500") {
+		t.Errorf("of two duties with hours one is picked: %q", label("intake.year.text"))
+	}
+}
+
 // A duty is opened again: its laws and its part are there, and are changed in one step.
 func TestImportIsChanged(t *testing.T) {
 	f, _ := importing(t, pressFile, "../../samples/recordings/press-shift.csv")

@@ -1,10 +1,12 @@
 package frame
 
 import (
+	"bytes"
 	"os"
 	"path/filepath"
 	"strings"
 	"testing"
+	"time"
 
 	"barlitre/app/station"
 	"barlitre/audit"
@@ -86,6 +88,36 @@ func TestPrintedSheets(t *testing.T) {
 	t.Setenv(saveDirVariable, filepath.Join(dir, "missing"))
 	b.printSheets(pdf.A4)
 	b.until("the failure is said", func() bool { return strings.Contains(b.status.Text, "nothing was written") })
+}
+
+// TestSheetsPrintedAtOnce: sheets that are printed right after an edit wait for its results.
+func TestSheetsPrintedAtOnce(t *testing.T) {
+	dir := t.TempDir()
+	t.Setenv(saveDirVariable, dir)
+	today = func() time.Time { return time.Date(2024, 5, 6, 12, 0, 0, 0, time.UTC) }
+	t.Cleanup(func() { today = time.Now })
+	b := newBench(t)
+	b.Open("")
+	b.solved()
+	sheets := func() []byte {
+		b.status.SetText("")
+		b.printSheets(pdf.A4)
+		b.until("the sheets are saved", func() bool { return strings.HasPrefix(b.status.Text, "Saved the sheets: ") })
+		data, err := os.ReadFile(filepath.Join(dir, "baling-press-sheets.pdf"))
+		if err != nil {
+			t.Fatal(err)
+		}
+		return data
+	}
+	before := sheets()
+	if err := b.doc.Set("As found/RV1.crack", "180 bar"); err != nil {
+		t.Fatal(err)
+	}
+	atOnce := sheets()
+	b.solved()
+	if later := sheets(); bytes.Equal(before, later) || !bytes.Equal(atOnce, later) {
+		t.Errorf("what was printed at once is not the audit as it stands (that of before: %v)", bytes.Equal(atOnce, before))
+	}
 }
 
 // TestSpeedOfTheClock: as fitted a cycle takes 8 s to a minute; a factor is that.

@@ -169,16 +169,21 @@ func (f *Frame) recordings(do func(station.Recordings)) {
 	}
 }
 
-// dropped opens an audit, or takes a recording in.
-func (f *Frame) dropped(path string) {
-	if f.asking() {
+// dropped opens an audit, or takes recordings in, several at once.
+func (f *Frame) dropped(paths ...string) {
+	if f.asking() || len(paths) == 0 {
 		return
 	}
-	if slices.Contains(station.RecordingEndings, strings.ToLower(filepath.Ext(path))) {
-		f.recordings(func(r station.Recordings) { r.TakeIn(path) })
+	recording := func(path string) bool {
+		return slices.Contains(station.RecordingEndings, strings.ToLower(filepath.Ext(path)))
+	}
+	if recording(paths[0]) {
+		f.recordings(func(r station.Recordings) {
+			r.TakeIn(slices.DeleteFunc(paths, func(path string) bool { return !recording(path) })...)
+		})
 		return
 	}
-	f.leave(func() { f.open(path) })
+	f.leave(func() { f.open(paths[0]) })
 }
 
 // auditFolder is where the open file is; for one without a name the folder that was last

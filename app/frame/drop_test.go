@@ -4,6 +4,7 @@ import (
 	"image/color"
 	"os"
 	"path/filepath"
+	"strings"
 	"testing"
 
 	"fyne.io/fyne/v2"
@@ -20,8 +21,8 @@ type taker struct {
 	picked int
 }
 
-func (t *taker) PickRecording()     { t.picked++ }
-func (t *taker) TakeIn(path string) { t.took = append(t.took, path) }
+func (t *taker) PickRecording()         { t.picked++ }
+func (t *taker) TakeIn(paths ...string) { t.took = append(t.took, paths...) }
 
 // A recording that is dropped goes to the station that takes recordings, shown first; an
 // audit that is dropped is opened. The File menu asks that station too.
@@ -42,6 +43,10 @@ func TestDropped(t *testing.T) {
 	b.drain()
 	if b.doc.File().Title != "Dropped" || len(second.took) != 1 {
 		t.Errorf("%q is open, took %v", b.doc.File().Title, second.took)
+	}
+	second.took = nil
+	if b.dropped("/a/day_1.csv", "/a/notes.pdf", "/a/day_2.CSV"); strings.Join(second.took, " ") != "/a/day_1.csv /a/day_2.CSV" {
+		t.Errorf("of several files it took %v", second.took)
 	}
 	var item *fyne.MenuItem
 	for _, x := range b.menu.main.Items[0].Items {

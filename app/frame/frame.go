@@ -81,9 +81,11 @@ func New(app fyne.App, opt document.Options, stations ...func(station.Context) s
 	f.win.Resize(f.settings.size())
 	f.win.SetCloseIntercept(f.quit)
 	f.win.SetOnDropped(func(_ fyne.Position, uris []fyne.URI) {
-		if len(uris) > 0 {
-			f.dropped(uris[0].Path())
+		var paths []string
+		for _, u := range uris {
+			paths = append(paths, u.Path())
 		}
+		f.dropped(paths...)
 	})
 	f.dumper = newDumper(f)
 	countFrames()
@@ -192,6 +194,7 @@ func (f *Frame) reset() {
 	f.clock, f.duty, f.circuit, f.block, f.beside = 0, 0, -1, "", ""
 	f.solution, f.solved = f.doc.Solution()
 	if file := f.doc.File(); file != nil && len(file.Duties) > 0 {
+		f.duty = file.DutiesByYear()[0]
 		f.clock = f.firstMotion()
 	}
 	f.changed(station.Everything)

@@ -1,6 +1,7 @@
 package frame
 
 import (
+	"context"
 	"fmt"
 	"io"
 	"os"
@@ -12,7 +13,6 @@ import (
 	"fyne.io/fyne/v2/dialog"
 
 	"barlitre/app/station"
-	"barlitre/audit"
 	"barlitre/audit/figures"
 	"barlitre/audit/pdf"
 	"barlitre/machines/units"
@@ -74,21 +74,26 @@ func (f *Frame) printSheets(on pdf.Paper) {
 	f.showFiles(d, "Save the sheets as PDF", "Save")
 }
 
-// writeSheets writes them in the background: what is drawn is what is seen now.
+// writeSheets writes them in the background: what is drawn is what is seen now, with the
+// results of the audit as it stands; they are waited for.
 func (f *Frame) writeSheets(path string, on pdf.Paper) {
 	file, v, opt := f.doc.File(), f.seen(on), pdf.Options{System: f.settings.system, Date: today()}
-	var s *audit.Solution
 	if f.doc.Current() {
-		s, _ = f.doc.Solution()
+		f.Say("Writing " + path + " …")
+	} else {
+		f.Say("Solving the last change, then writing " + path + " …")
 	}
-	f.Say("Writing " + path + " …")
 	go func() {
+		s, unsolved := f.doc.Settled(context.Background(), nil)
+		if unsolved == nil {
+			file = s.File
+		}
 		err := station.WriteWhole(path, func(w io.Writer) error { return pdf.WriteSheets(w, file, s, v, opt) })
 		post(func() {
 			switch {
 			case err != nil:
 				f.Fail(fmt.Errorf("print the sheets to %s: %w; nothing was written there, and the audit is still open here", path, err))
-			case s == nil:
+			case unsolved != nil:
 				f.Say("Saved the sheets without results, for they are not solved: " + path)
 			default:
 				f.Say("Saved the sheets: " + path)

@@ -1,6 +1,8 @@
 package frame
 
 import (
+	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 
@@ -28,5 +30,31 @@ func TestStripReadsTheRows(t *testing.T) {
 	b.clock = 100_001
 	if text := b.strip.atClock(); !strings.Contains(text, "0.0200 kN") {
 		t.Errorf("the strip says %q", text)
+	}
+}
+
+// A file is opened on the duty that stands for the year, not on one that does not run in it.
+func TestOpensOnTheDutyOfTheYear(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "press.yaml")
+	text := `format: barlitre/1
+oil: {grade: ISO VG 46, temperature: 50 C}
+axes: {ram: linear}
+duties:
+- name: assumed
+  hours: 0 h
+  points: {t: [0 s, 1 s], ram.speed: [0.5 m/s, 0.5 m/s], ram.load: [50 kN, 50 kN]}
+- name: measured
+  hours: 3000 h
+  points: {t: [0 s, 1 s, 3 s], ram.speed: [0 m/s, 0 m/s, 0.1 m/s], ram.load: [5 kN, 5 kN, 5 kN]}
+circuits: []
+`
+	if err := os.WriteFile(path, []byte(text), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	b := newBench(t)
+	b.Open(path)
+	b.until("the file", func() bool { return b.doc.Path() == path && b.duty == 1 })
+	if b.clock != 3 || b.strip.picker.Selected != "measured" {
+		t.Errorf("the clock stands at %g s of %s", b.clock, b.strip.picker.Selected)
 	}
 }

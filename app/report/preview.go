@@ -38,6 +38,7 @@ type preview struct {
 	scroll  *container.Scroll
 	size    int // index into widths
 	asked   request
+	shown   request // that the pages are of
 	start   func(func())
 }
 
@@ -99,6 +100,7 @@ func (p *preview) load() {
 		if len(p.pages.Objects) == 0 {
 			p.say("The report is being laid out.", "It waits for the oil temperatures.")
 		}
+		p.state()
 		return
 	}
 	ask := request{all, fmt.Sprint(opt.Without, opt.Sheets), opt.System, width, p.ctx.Palette(), len(opt.SiteCheck) > 0}
@@ -118,6 +120,7 @@ func (p *preview) load() {
 	if len(p.pages.Objects) == 0 {
 		p.say("The pages are being laid out …", "")
 	}
+	p.state()
 	pixels := width
 	if c := fyne.CurrentApp().Driver().CanvasForObject(p.pages); c != nil {
 		pixels *= c.Scale()
@@ -126,7 +129,7 @@ func (p *preview) load() {
 		d := drawPages(ask.of, opt, int(pixels+0.5))
 		fyne.Do(func() {
 			if ask == p.asked {
-				p.show(d, width)
+				p.show(d, ask)
 			}
 		})
 	})
@@ -186,6 +189,7 @@ func smaller(in *image.RGBA, n int) *image.RGBA {
 }
 
 func (p *preview) say(head, below string) {
+	p.head.Importance = widget.MediumImportance
 	p.head.SetText(head)
 	p.index.SetText(below)
 	if below == "" {
@@ -195,11 +199,15 @@ func (p *preview) say(head, below string) {
 	}
 }
 
-func (p *preview) show(d drawn, width float32) {
+func (p *preview) show(d drawn, of request) {
+	p.shown = of
 	if d.err != nil {
+		p.pages.Objects = nil // those of before would pass for these
+		p.pages.Refresh()
 		p.say("The pages could not be laid out: "+d.err.Error(), "")
 		return
 	}
+	width := of.width
 	var objects []fyne.CanvasObject
 	for _, img := range d.pages {
 		size := img.Rect.Size()
@@ -228,11 +236,30 @@ func (p *preview) state() {
 	if n == 0 {
 		return
 	}
-	text := plural(n, "page") + ", drawn as they will print"
-	if !p.ctx.Doc().Current() {
-		text += "; the last change is still being solved"
+	text, importance := plural(n, "page")+", drawn as they will print", widget.MediumImportance
+	switch doc := p.ctx.Doc(); {
+	case p.unsolved():
+		text, importance = "The last change is not solved; the "+plural(n, "page")+" here are from before it", widget.DangerImportance
+	case !doc.Current(), doc.Warming(), p.asked != p.shown:
+		text, importance = "Being laid out anew; the "+plural(n, "page")+" here are from before the last change", widget.WarningImportance
+	default:
+		if running, _, _, _ := doc.Advising(); running {
+			text += "; fix first and site check follow"
+		}
+	}
+	if p.head.Importance != importance {
+		p.head.Importance = importance
+		p.head.Refresh()
 	}
 	p.head.SetText(text)
+}
+
+// unsolved reports whether no solution of the present audit will come: solving failed, or
+// was given up.
+func (p *preview) unsolved() bool {
+	doc := p.ctx.Doc()
+	running, _, _ := doc.Solving()
+	return !doc.Current() && !running
 }
 
 // contents lists the sections with their pages.

@@ -17,6 +17,7 @@ import (
 	"unicode/utf16"
 
 	"fyne.io/fyne/v2/test"
+	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/station"
 	"barlitre/app/station/stationtest"
@@ -294,6 +295,51 @@ func TestPreview(t *testing.T) {
 		t.Errorf("larger is %v, was %v", got, size)
 	}
 	_ = c
+}
+
+// From an edit on until its pages stand there, it is said in words that those that are shown
+// are of before; what is printed meanwhile is the audit as it stands.
+func TestPreviewSaysThatItIsBehind(t *testing.T) {
+	c, r := shown(t, press)
+	said := func(want string, importance widget.Importance) {
+		t.Helper()
+		if h := r.preview.head; !strings.Contains(h.Text, want) || h.Importance != importance {
+			t.Errorf("%q (%v), want %q", h.Text, h.Importance, want)
+		}
+	}
+	said("drawn as they will print", widget.MediumImportance)
+	var drawing []func()
+	r.preview.start = func(work func()) { drawing = append(drawing, work) }
+	if err := c.Document.Set("energy.price", "0.29 EUR/kWh"); err != nil {
+		t.Fatal(err)
+	}
+	r.Changed(station.Model)
+	said("Being laid out anew; the ", widget.WarningImportance)
+	c.Look("report-behind")
+	dir := t.TempDir()
+	t.Setenv(saveDirVariable, dir)
+	press1(t, "report.pdf")
+	if data, err := os.ReadFile(filepath.Join(dir, "baling-press.pdf")); err != nil || !strings.Contains(texts(t, data), "0.29") {
+		t.Errorf("what was printed is of before: %v", err)
+	}
+	c.Wait()
+	r.Changed(station.Solution)
+	said("Being laid out anew; the ", widget.WarningImportance)
+	if len(drawing) == 0 {
+		t.Fatal("nothing is drawn")
+	}
+	for _, work := range drawing {
+		work()
+	}
+	said("drawn as they will print", widget.MediumImportance)
+	if err := c.Document.Set("energy.price", "0.31 EUR/kWh"); err != nil {
+		t.Fatal(err)
+	}
+	if c.Document.CancelSolve(); c.Document.Current() {
+		t.Fatal("solved before it could be cancelled")
+	}
+	r.Changed(station.Model | station.Solution)
+	said("is not solved", widget.DangerImportance)
 }
 
 func TestTextsAreKept(t *testing.T) {

@@ -51,7 +51,7 @@ func newSaver(ctx station.Context, options func() pdf.Options) *saver {
 		s.buttons = append(s.buttons, b)
 		return b
 	}
-	asPDF := button("report.pdf", "Save PDF…", "the report, as shown at the right", s.savePDF)
+	asPDF := button("report.pdf", "Save PDF…", "the report of the audit as it stands, also while the pages are still of before", s.savePDF)
 	asPDF.Importance = widget.HighImportance
 	asCSV := button("report.csv", "Save CSV…", "every time step of each circuit and duty, as tables in a folder", s.saveCSV)
 	asJSON := button("report.json", "Save JSON…", "all results as numbers in SI units", s.saveJSON)
@@ -112,7 +112,7 @@ func (s *saver) saveJSON() {
 func (s *saver) saveFile(what, ext string, write func(context.Context, io.Writer, *audit.Solution) error) {
 	do := func(path string) {
 		s.work(what, path, func(ctx context.Context, progress func(int, int)) error {
-			r, err := s.solution(ctx, progress)
+			r, err := s.ctx.Doc().Settled(ctx, progress)
 			if err != nil {
 				return err
 			}
@@ -143,14 +143,6 @@ func (s *saver) ask(d *dialog.FileDialog) {
 	}
 	d.Resize(fyne.NewSize(760, 520))
 	d.Show()
-}
-
-// solution returns the solution of the audit as it stands; it is worked out where it is not there yet.
-func (s *saver) solution(ctx context.Context, progress func(int, int)) (*audit.Solution, error) {
-	if r, _ := s.ctx.Doc().Solution(); r != nil && s.ctx.Doc().Current() {
-		return r.Warm(ctx)
-	}
-	return audit.Solve(ctx, s.ctx.Doc().File(), audit.Options{Progress: progress})
 }
 
 // work runs in the background with progress and a way to cancel, and says how it ended.

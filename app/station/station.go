@@ -50,9 +50,10 @@ type Station interface {
 
 // Recordings is a station that takes in what a logger recorded.
 type Recordings interface {
-	// PickRecording asks for a file, TakeIn begins with one.
+	// PickRecording asks for a file. TakeIn begins with files, or adds them to what is being
+	// taken in where its loggers are shown.
 	PickRecording()
-	TakeIn(path string)
+	TakeIn(paths ...string)
 }
 
 // RecordingEndings are how names of loggers' files end.

@@ -80,11 +80,25 @@ func (l *layout) drawnIntro(at instant) string {
 	if phase != "" {
 		phase = " (" + phase + ")"
 	}
-	return fmt.Sprintf("All circuits at the same instant, at %s%s of duty “%s”: the middle of the longest stretch in which “%s” draws at least %s of its largest power, %s. "+
+	return fmt.Sprintf("All circuits at the same instant, at %s%s of duty “%s”%s: the middle of the longest stretch in which “%s” draws at least %s of its largest power, %s. "+
 		"Pressures, flows, speeds and openings are those of this instant; arrowheads show where the oil goes. "+
 		"Discs and the figures in their colour are the heat of one whole cycle, by area: the larger the disc, the more energy is lost there. "+
-		"Tint, width and discs have the same scales in all circuits.", units.Format(at.t, units.Preferred(units.Time, l.r.System), 4), phase, run.Duty.Name, at.of.Circuit.Name, units.Format(nearMost, units.Percent, 2),
+		"Tint, width and discs have the same scales in all circuits.", units.Format(at.t, units.Preferred(units.Time, l.r.System), 4), phase, run.Duty.Name, l.whyDuty(at), at.of.Circuit.Name, units.Format(nearMost, units.Percent, 2),
 		units.Format(run.Balance.PeakSupply, units.Preferred(units.Power, l.r.System), 4))
+}
+
+// whyDuty says behind its name why it is this duty, where there are others.
+func (l *layout) whyDuty(at instant) string {
+	f := l.s.File
+	switch order := f.DutiesByYear(); {
+	case len(f.Duties) < 2 || len(f.InYear()) == 0:
+		return ""
+	case at.duty != order[0]:
+		return fmt.Sprintf(" (for “%s” could not be solved)", f.Duties[order[0]].Name)
+	case len(f.InYear()) == 1:
+		return ", which alone runs in the year"
+	}
+	return ", which moves most in the year"
 }
 
 // phaseAt names the phase of a duty at time t, "" where there is none.

@@ -292,3 +292,43 @@ func TestLargeCircuitIsDrawn(t *testing.T) {
 		t.Errorf("%d circuits are said to be smaller; names are %.2f and %.2f mm high", told, small["FILTER59"], small["PC1"])
 	}
 }
+
+// A duty that does not run in the year is not drawn, however much it draws; that which runs is,
+// and the text says so. One that alone is solved is drawn all the same.
+func TestDutyOfTheYearIsDrawn(t *testing.T) {
+	f := read(t)
+	drawn := f.Duties[mostDrawn(solve(t, f)).duty].Name
+	if len(f.Duties) < 2 {
+		t.Fatal("the case needs two duties")
+	}
+	for _, d := range f.Duties {
+		hours := "0 h"
+		if d.Name != drawn {
+			hours = "100 h"
+		}
+		if err := f.SetDuty(d.Name, "hours", hours); err != nil {
+			t.Fatal(err)
+		}
+	}
+	s := solve(t, f)
+	at := mostDrawn(s)
+	if got := f.Duties[at.duty].Name; got == drawn || f.Duties[at.duty].Hours == 0 {
+		t.Errorf("duty %q is drawn, which has no hours", got)
+	}
+	if v := BusiestView(s); v.Duty != at.duty {
+		t.Errorf("the sheets show duty %d, the report %d", v.Duty, at.duty)
+	}
+	text := ""
+	for _, b := range circuitPages(t, "duty of the year", s, Options{})[0].Boxes() {
+		text += b.Text + " "
+	}
+	if !strings.Contains(text, "in the year") {
+		t.Errorf("the circuits do not say why this duty: %q", text)
+	}
+	for _, c := range s.Circuits {
+		c.Duties[at.duty].Balance = nil
+	}
+	if again := mostDrawn(s); again.of == nil || again.duty == at.duty {
+		t.Error("a duty that could not be solved is drawn, or none")
+	}
+}

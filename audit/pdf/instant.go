@@ -18,21 +18,19 @@ type instant struct {
 // value itself often stands in a ramp that lasts for hundredths of a second.
 const nearMost = 0.95
 
-// mostDrawn finds where the circuit as found, or, where none is solved, the first
-// circuit that is, draws most power: the middle of the longest stretch near it.
+// mostDrawn finds where the circuit as found, or, where none is solved, the first circuit
+// that is, draws most power in the duty that stands for the year, of those that are solved:
+// the middle of the longest stretch near it.
 func mostDrawn(s *audit.Solution) instant {
+	order := s.File.DutiesByYear()
 	for _, proposal := range []bool{false, true} {
 		for _, c := range s.Circuits {
-			at := instant{}
-			for i, d := range c.Duties {
-				if c.Proposal == proposal && d.Balance != nil && d.Plot != nil &&
-					(at.of == nil || d.Balance.PeakSupply > at.of.Duties[at.duty].Balance.PeakSupply) {
-					at = instant{of: c, duty: i}
+			for _, i := range order {
+				at := instant{of: c, duty: i}
+				if run := at.run(c); c.Proposal == proposal && run != nil {
+					at.t = middleOfMost(run)
+					return at
 				}
-			}
-			if at.of != nil {
-				at.t = middleOfMost(at.of.Duties[at.duty])
-				return at
 			}
 		}
 	}

@@ -76,7 +76,7 @@ func (c *clockRows) take(way string) {
 	k := audit.Clock{}
 	switch way {
 	case clockFound:
-		if k = likelyClock(undated(c.p.sources[0].recipe), undated(c.s.recipe)); k.Channel == "" {
+		if k = audit.LikelyClock(undated(c.p.sources[0].recipe), undated(c.s.recipe)); k.Channel == "" {
 			k.Channel, k.With = column(c.first.words, 0), column(c.with.words, 0)
 		}
 	case clockGiven:

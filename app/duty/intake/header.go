@@ -22,6 +22,8 @@ type header struct {
 	stop, make   *widgets.Button
 	again        *widgets.Button // after Cancel
 	running      *fyne.Container
+	year         *yearRow
+	hoursRow     *fyne.Container
 }
 
 func newHeader(p *Page) *header {
@@ -41,11 +43,13 @@ func newHeader(p *Page) *header {
 	h.make.Importance = widget.HighImportance
 	leave := widgets.Name(widgets.NewButton("Back", p.close), "intake.back")
 	h.running = container.NewHBox(container.New(widgets.Wide(140), h.bar), h.stop)
-	own := container.NewHBox(widget.NewLabel("Duty"), container.New(widgets.Wide(200), h.name),
-		widget.NewLabel("Hours a year"), container.New(widgets.Wide(90), h.hours), layout.NewSpacer())
+	h.year = newYearRow(p)
+	h.hoursRow = container.NewHBox(widget.NewLabel("Hours a year"), container.New(widgets.Wide(90), h.hours))
+	own := container.NewHBox(widget.NewLabel("Duty"), container.New(widgets.Wide(200), h.name), h.hoursRow, layout.NewSpacer())
 	h.content = container.NewVBox(
 		container.NewBorder(nil, nil, nil, container.NewHBox(leave, h.make), h.title),
-		container.NewBorder(nil, nil, own, container.NewHBox(h.again, h.running), h.state))
+		container.NewBorder(nil, nil, own, container.NewHBox(h.again, h.running), h.state),
+		h.year.content)
 	return h
 }
 
@@ -107,6 +111,8 @@ func (h *header) fill() {
 		h.name.Enable()
 		h.hours.Enable()
 	}
+	h.year.fill()
+	show(h.hoursRow, h.year.inPlaceOf() == "")
 }
 
 // says is the state in words.

@@ -53,7 +53,7 @@ func (l *loggers) fill() {
 
 func (l *loggers) rebuild() {
 	p := l.p
-	l.list.Objects, l.clocks = []fyne.CanvasObject{say("A recording that the logger split goes on in further files. What another logger recorded at the same time stands beside it once its clock is set; its channels then make tracks as well.", widget.MediumImportance, false)}, nil
+	l.list.Objects, l.clocks = []fyne.CanvasObject{say("A recording that the logger split goes on in further files. What another logger recorded at the same time stands beside it once its clock is set; its channels then make tracks as well. Several files can be dropped here at once: those with the columns of a logger go on there, others are further loggers.", widget.MediumImportance, false)}, nil
 	for i := range p.sources {
 		l.list.Add(l.card(i))
 	}
@@ -210,7 +210,7 @@ func (p *Page) addLogger(path string) error {
 	if err != nil {
 		return err
 	}
-	s.clock = likelyClock(p.sources[0].recipe, s.recipe)
+	s.clock = audit.LikelyClock(p.sources[0].recipe, s.recipe)
 	p.sources = append(p.sources, s)
 	if len(s.blocking()) > 0 {
 		p.hand, p.at = len(p.sources)-1, fileTab
@@ -241,24 +241,4 @@ func (p *Page) removeLogger(s *source) {
 	p.sources = slices.DeleteFunc(slices.Clone(p.sources), func(x *source) bool { return x == s })
 	p.hand = 0
 	p.readAll()
-}
-
-// likelyClock takes times as they are where both have dates; else a channel of one quantity
-// that both have, of the same name before others, tells.
-func likelyClock(a, b logger.Recipe) (out audit.Clock) {
-	if a.Time.Form == logger.Dated && b.Time.Form == logger.Dated {
-		return out
-	}
-	for _, x := range a.Channels {
-		for _, y := range b.Channels {
-			same := x.Quantity != "" && x.Quantity == y.Quantity && !x.Leave && !y.Leave && !x.Text && !y.Text
-			if same && (out.Channel == "" || strings.EqualFold(x.Column, y.Column)) {
-				out = audit.Clock{Channel: x.Column, With: y.Column}
-				if strings.EqualFold(x.Column, y.Column) {
-					return out
-				}
-			}
-		}
-	}
-	return out
 }

@@ -24,7 +24,7 @@ func (p *Page) make() {
 		return
 	}
 	hours, err := hoursText(p.head.hours.Text)
-	if err != nil {
+	if err != nil && p.head.year.inPlaceOf() == "" {
 		p.ctx.Fail(fmt.Errorf("hours a year: %w", err))
 		return
 	}
@@ -86,7 +86,9 @@ func (p *Page) finish(names [][]string, hours string) {
 	if p.again != "" {
 		t.Duty, step = p.again, "Change how "+p.again+" is taken in"
 	} else {
-		if hours != "" {
+		if t.InPlaceOf = p.head.year.inPlaceOf(); t.InPlaceOf != "" {
+			step += " in place of " + t.InPlaceOf
+		} else if hours != "" {
 			t.Keys["hours"] = hours
 		}
 		if cyclic(p.part) {
@@ -116,7 +118,10 @@ func (p *Page) made(t audit.Taking, err error) {
 		p.ctx.Fail(fmt.Errorf("%w. Nothing was changed", err))
 		return
 	}
-	i := p.dutyNamed(t.Duty)
+	i, year := p.dutyNamed(t.Duty), ""
+	if t.InPlaceOf != "" && i >= 0 {
+		year = fmt.Sprintf(" It has the %s a year of %s.", hoursOf(p.ctx.Doc().File().Duties[i].Hours), t.InPlaceOf)
+	}
 	p.close()
 	if i >= 0 {
 		p.ctx.SetDuty(i)
@@ -128,7 +133,7 @@ func (p *Page) made(t audit.Taking, err error) {
 	if n := len(t.Axes); n > 0 {
 		said += fmt.Sprintf(" New: %s.", counted(n, "axis", "axes"))
 	}
-	p.ctx.Say(said + " Undo takes it back.")
+	p.ctx.Say(said + year + " Undo takes it back.")
 }
 
 func counted(n int, one, many string) string {

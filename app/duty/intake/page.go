@@ -135,19 +135,23 @@ func (p *Page) refresh() {
 // Changed follows a change of theme, units or the audit.
 func (p *Page) Changed(station.What) { p.refresh() }
 
-// Open begins with a recording; it says why it cannot.
-func (p *Page) Open(path string) error {
-	s, err := newSource(path)
+// Open begins with a recording, of several files where they are given; it says why it cannot.
+func (p *Page) Open(paths ...string) error {
+	list, err := sorted(nil, paths)
 	if err != nil {
 		return err
 	}
-	p.begin(s)
-	p.head.name.SetValue(p.freeName(path), "")
+	p.begin(list...)
+	p.head.name.SetValue(p.freeName(list[0].paths[0]), "")
+	p.head.hours.SetValue("", "")
 	p.at = fileTab
-	if len(p.blocking()) == 0 {
+	switch {
+	case len(paths) > 1:
+		p.at = loggersTab // which file was taken for what
+	case len(p.blocking()) == 0:
 		p.at = tracksTab // what comes of it; the other sides tell how
 	}
-	p.read()
+	p.readAll()
 	return nil
 }
 
@@ -162,6 +166,7 @@ func (p *Page) Reopen(i int) error {
 	p.begin(list...)
 	p.again, p.part, p.tracks = f.Duties[i].Name, im.Part, im.TracksOf()
 	p.head.name.SetValue(p.again, "")
+	p.head.hours.SetValue(p.ctx.Local(hoursOf(f.Duties[i].Hours)), "")
 	p.at = tracksTab
 	p.read()
 	return nil
@@ -169,14 +174,16 @@ func (p *Page) Reopen(i int) error {
 
 // The sides that the page opens with.
 const (
-	fileTab   = 0
-	tracksTab = 4
+	fileTab    = 0
+	loggersTab = 2
+	tracksTab  = 4
 )
 
 func (p *Page) begin(list ...*source) {
 	p.job.cancel()
 	p.sources, p.hand, p.rec = list, 0, nil
 	p.tracks, p.axes, p.part, p.again, p.known, p.out = nil, nil, logged.Part{}, "", map[string]bool{}, outcome{}
+	p.head.year.picked = false
 }
 
 // freeName is the name of the file, or with a number behind it where a duty has it.

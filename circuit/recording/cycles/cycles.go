@@ -58,6 +58,7 @@ type Result struct {
 
 	in, coarse Input     // as it is, and with fewer rows
 	scanned    []float64 // a cycle as coarse has it, to scan by
+	works      float64   // s, from the start of a cycle until its work ends
 	ctx        context.Context
 }
 
@@ -74,7 +75,7 @@ func Find(in Input, o Options) (*Result, error) {
 	coarse := states(in, o)
 	runs := runsOf(in, coarse, o)
 	if len(runs) > 0 && r.ctx.Err() == nil {
-		r.repeat(runs, o)
+		r.repeat(runs, coarse, o)
 	}
 	if r.ctx.Err() != nil {
 		return nil, r.ctx.Err()
@@ -153,7 +154,7 @@ func runsOf(in Input, s []Stretch, o Options) (out []run) {
 }
 
 // repeat finds the period in the longest run and cuts all runs into cycles.
-func (r *Result) repeat(runs []run, o Options) {
+func (r *Result) repeat(runs []run, coarse []Stretch, o Options) {
 	t := r.in.T
 	long := slices.MaxFunc(runs, func(a, b run) int { return compare(t[a.b-1]-t[a.a], t[b.b-1]-t[b.a]) })
 	from, to := t[long.a], t[min(long.b, len(t)-1)]
@@ -169,10 +170,16 @@ func (r *Result) repeat(runs []run, o Options) {
 	}
 	r.Height = height
 	r.coarse = r.in.thinned(int(guess / coarsePoints / (to - from) * float64(long.b-long.a)))
+	from = begin(r.in, coarse, from, guess)
 	template := r.in.shape(from, from+guess)
 	r.scanned = r.coarse.shape(from, from+guess*(points-1)/points)
-	for _, run := range runs {
-		r.cut(t[run.a], t[min(run.b, len(t)-1)], guess, template)
+	r.works = worksFor(coarse, from, guess)
+	for i, run := range runs {
+		room := t[len(t)-1]
+		if i+1 < len(runs) {
+			room = t[runs[i+1].a]
+		}
+		r.cut(begin(r.in, coarse, t[run.a], guess), t[min(run.b, len(t)-1)], room, guess, template)
 	}
 	if len(r.Cycles) < 2 {
 		r.Cycles = nil
@@ -248,16 +255,27 @@ func likeness(a, b []float64) float64 {
 // drift is how far a cycle may start from where it is expected, as a share of the period.
 const drift = 0.25
 
-// cut goes from cycle to cycle: the next one starts where what follows is most like the template.
-func (r *Result) cut(from, to, period float64, template []float64) {
-	end := r.in.T[len(r.in.T)-1]
-	for start := from; start+period*(1-drift) <= to && start+period <= end+0.01*period && r.ctx.Err() == nil; {
+// Both are our choice: how much of a period the work of the last cycle of a run may end early
+// for that cycle to be whole, and what the recording may lack of the pause after it, besides
+// two rows.
+const (
+	shortest = 0.1
+	lacking  = 0.01
+)
+
+// cut goes from cycle to cycle, from the start of a run to the end of its work: the next one
+// starts where what follows is most like the template. The last one is whole if its work is
+// and if there is room for the pause after it.
+func (r *Result) cut(from, to, room, period float64, template []float64) {
+	t := r.in.T
+	slack := lacking*period + 2*(t[len(t)-1]-t[0])/float64(len(t)-1)
+	for start := from; start+r.works-shortest*period <= to && start+period <= room+slack && r.ctx.Err() == nil; {
 		at := start + period // of the last one no next one tells where it ends
-		if start+1.5*period <= to {
+		if start+period+r.works/2 <= to {
 			at = r.next(start, to, period, template)
 		}
 		if r.in.likeAt(start, period, template) >= leastHeight {
-			r.Cycles = append(r.Cycles, Cycle{From: start, To: math.Min(at, end)})
+			r.Cycles = append(r.Cycles, Cycle{From: start, To: math.Min(at, room)})
 		}
 		start = at
 	}
@@ -278,7 +296,7 @@ func (r *Result) next(start, to, period float64, template []float64) float64 {
 	best, at := math.Inf(-1), start+period
 	for k := 0; k <= places; k++ {
 		s := from + period*float64(k)/points
-		if s+0.5*period > to {
+		if s+r.works/2 > to {
 			break
 		}
 		l := 0.0
