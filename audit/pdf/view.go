@@ -43,7 +43,8 @@ var (
 // Papers lists them.
 var Papers = []Paper{A4, A3}
 
-// BusiestView shows all circuits while the one as found draws most power.
+// BusiestView shows all circuits while the one as found draws most power in the duty that
+// stands for the year, as the report does.
 func BusiestView(s *audit.Solution) View {
 	at := mostDrawn(s)
 	return View{Duty: at.duty, At: at.t}
