@@ -63,7 +63,9 @@ func (y *yearRow) fill() {
 	y.which.offer(append(names, ""), append(labels, "beside the others"))
 	y.which.set(y.inPlaceOf())
 	y.p.loading = loading
-	setText(y.text, y.p.ctx.Local(y.says()))
+	if text := y.p.ctx.Local(y.says()); y.text.Text != text {
+		y.text.SetText(text)
+	}
 }
 
 // says what becomes of the hours of the year.
