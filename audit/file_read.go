@@ -172,7 +172,7 @@ func IsName(text string) bool { return idText.MatchString(text) }
 
 // id reports whether a name can stand in lines and tracks.
 func (r *reader) id(s scope, n *yaml.Node, what string) bool {
-	if !idText.MatchString(n.Value) {
+	if !IsName(n.Value) {
 		r.bad(s, n, "", "%s %q: use letters, digits and _ only", what, n.Value)
 		return false
 	}

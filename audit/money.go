@@ -86,12 +86,17 @@ func SimplePayback(cost CostRange, saving float64) Payback {
 	return none
 }
 
+// years writes a time of payback.
+func years(x float64) string { return units.Number(x, 2) }
+
+// ranges reports whether a range is written.
+func (p Payback) ranges() bool { return p.Low < p.High && years(p.Low) != years(p.High) }
+
 // String says the payback as people do: "2.6 years (2.0 to 3.5)".
 func (p Payback) String() string {
 	if p.None != "" {
 		return p.None
 	}
-	years := func(x float64) string { return units.Number(x, 2) }
 	hasRange := !math.IsNaN(p.Low) && !math.IsNaN(p.High)
 	switch {
 	case !math.IsNaN(p.Likely) && hasRange:

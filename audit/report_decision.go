@@ -3,7 +3,6 @@ package audit
 import (
 	"fmt"
 	"math"
-	"strings"
 
 	"barlitre/machines/units"
 )
@@ -69,11 +68,10 @@ func paybackText(p Payback) string {
 	if p.None != "" {
 		return p.None
 	}
-	text := "simple payback " + p.String()
-	if strings.Contains(text, " to ") {
-		text += ", the range by its cost alone"
+	if p.ranges() {
+		return "simple payback " + p.String() + ", the range by its cost alone"
 	}
-	return text
+	return "simple payback " + p.String()
 }
 
 // warnings lists what stands against a verdict.

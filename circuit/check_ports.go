@@ -24,7 +24,7 @@ func (k *checker) ports() {
 			k.say(Stops, b, "control", "a load-sensing pump needs a pilot line at its port LS").because(NoLoadSignal, "LS")
 		}
 		if b.Kind == kindPump && kind.WordOf(b, "control") == "negative_flow" && k.of[PortRef{b.ID, "LS"}] == nil {
-			k.say(Stops, b, "control", "a pump of negative flow needs a pilot line at its port LS, from the line before an orifice in the return of the open centre")
+			k.say(Stops, b, "control", "a pump with negative flow control needs a pilot line at its port LS, from the line before an orifice in the return of the open centre")
 		}
 		if x := k.of[PortRef{b.ID, "X"}] != nil; b.Kind == kindSequence && x != (kind.WordOf(b, "pilot") == "external") {
 			k.say(Stops, b, "pilot", "with pilot: external it needs a pilot line at its port X, with pilot: inlet none")

@@ -177,12 +177,6 @@ func (s *Station) reload() {
 	s.panel.fill()
 }
 
-func setText(l *widgets.Text, text string) {
-	if l.DumpText() != text {
-		l.SetText(text)
-	}
-}
-
 // fillPicker lists the duties; two may have one name while a file is mended.
 func (s *Station) fillPicker() {
 	var names []string

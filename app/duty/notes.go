@@ -25,7 +25,7 @@ func (s *Station) fillNotes() {
 	if im := s.imported(); im != nil {
 		s.importNotes(im)
 	} else if text := s.sourceOf(d); text != "" {
-		setText(s.source, text)
+		s.source.SetText(text)
 		s.notes.Add(s.source)
 	}
 	for i, f := range s.findings(d) {

@@ -95,7 +95,7 @@ func (s *Station) importNotes(im *audit.Import) {
 	if !im.Part.Whole() {
 		text += fmt.Sprintf(" The duty is its %s, from %s to %s.", im.Part.Is, s.seconds(im.Part.From), s.seconds(im.Part.To))
 	}
-	setText(s.source, s.ctx.Local(text))
+	s.source.SetText(s.ctx.Local(text))
 	s.notes.Add(s.source)
 	change := widgets.Name(widgets.NewButton("Change the import…", s.changeImport), "duty.import.change")
 	buttons := container.NewHBox(change)

@@ -123,7 +123,7 @@ func (y *year) fill() {
 	show(y.begin, c == nil)
 	show(y.own, c != nil)
 	if c == nil {
-		setText(y.told, y.typedHours())
+		y.told.SetText(y.typedHours())
 		return
 	}
 	y.loading = true
@@ -147,7 +147,7 @@ func (y *year) fill() {
 			warnings = append(warnings, "⚠ "+y.s.ctx.Local(n.Text))
 		}
 	}
-	setText(y.warning, strings.Join(warnings, "\n"))
+	y.warning.SetText(strings.Join(warnings, "\n"))
 	show(y.warning, len(warnings) > 0)
 	y.picture.Refresh()
 }

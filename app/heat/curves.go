@@ -229,9 +229,7 @@ func (c *curves) say(failed string) {
 	case !same:
 		text = "On trial: the audit itself is unchanged until you put it in."
 	}
-	if c.note.DumpText() != text {
-		c.note.SetText(text)
-	}
+	c.note.SetText(text)
 	for _, b := range []*widgets.Button{c.take, c.back} {
 		if same {
 			b.Disable()

@@ -51,7 +51,7 @@ func newSaver(ctx station.Context, options func() pdf.Options) *saver {
 		s.buttons = append(s.buttons, b)
 		return b
 	}
-	asPDF := button("report.pdf", "Save PDF…", "the report of the audit as it stands, also while the pages are still of before", s.savePDF)
+	asPDF := button("report.pdf", "Save PDF…", "the report of the audit as it stands, even while the pages here are older", s.savePDF)
 	asPDF.Importance = widget.HighImportance
 	asCSV := button("report.csv", "Save CSV…", "every time step of each circuit and duty, as tables in a folder", s.saveCSV)
 	asJSON := button("report.json", "Save JSON…", "all results as numbers in SI units", s.saveJSON)

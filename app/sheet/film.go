@@ -79,7 +79,7 @@ func (e *editor) roll() bool {
 	f.made = made
 	p, edits, m, pixels := e.picture(e.sheet, true).kept(), f.edits, f.pen, e.pixels(size.Dx())
 	go func() {
-		m.Begin(p.ground)
+		m.Begin(p.opt.Palette.Card)
 		p.draw(m, pixels)
 		m.Flush()
 		copy(to.Pix, m.Image().Pix)

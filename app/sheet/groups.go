@@ -79,9 +79,7 @@ func (p *panel) summarize() {
 		if !p.expanded[g.section] {
 			text = commonReason(b, g.later)
 		}
-		if g.about.DumpText() != text {
-			g.about.SetText(text)
-		}
+		g.about.SetText(text)
 	}
 }
 

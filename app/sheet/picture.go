@@ -1,7 +1,6 @@
 package sheet
 
 import (
-	"image/color"
 	"maps"
 
 	"barlitre/app/widgets"
@@ -16,8 +15,7 @@ type picture struct {
 	state      *figures.SheetState
 	opt        figures.SheetOptions
 	x, y, zoom float64
-	w, h       float64 // room for the sheet
-	ground     color.NRGBA
+	w, h       float64             // room for the sheet
 	words      func(string) string // puts the decimal sign in; nil changes nothing
 	notice     string              // at the upper left
 	legend     float64             // height of the strip below, 0 for none
@@ -31,7 +29,7 @@ type picture struct {
 func (e *editor) picture(sh *figures.Sheet, legend bool) picture {
 	w, h := e.room()
 	p := picture{sheet: sh, state: e.state, opt: e.opt, x: e.x, y: e.y, zoom: e.zoom, w: w, h: h,
-		ground: e.s.ctx.Palette().Card, words: e.s.ctx.Words(), scale: float64(widgets.Scale())}
+		words: e.s.ctx.Words(), scale: float64(widgets.Scale())}
 	p.opt.Palette = e.s.ctx.Palette()
 	if sh == nil {
 		p.empty, p.head, p.lift = e.emptyLines(), 2, 20*p.scale

@@ -12,21 +12,13 @@ import (
 // A choice that makes a symbol larger puts aside what it would lie over, in one step of undo;
 // nothing else moves.
 func TestGrownSymbolGetsRoom(t *testing.T) {
-	b := newBench(t, "", window)
-	if err := b.doc.OpenEmpty(); err != nil {
+	b := drawing(t)
+	e := b.s.editors[0]
+	if _, err := b.doc.AddBlock(e.name, "filter", [2]float64{40, 0}); err != nil {
 		t.Fatal(err)
 	}
-	b.pump()
-	e := b.s.editors[0]
-	e.add("pump", [2]float64{0, 0})
-	b.pump()
-	for _, x := range []struct {
-		kind string
-		at   [2]float64
-	}{{"relief", [2]float64{10, 0}}, {"filter", [2]float64{40, 0}}} {
-		if _, err := b.doc.AddBlock(e.name, x.kind, x.at); err != nil {
-			t.Fatal(err)
-		}
+	if err := b.doc.Place("", "Move", e.name, map[string][2]float64{"RV1": {10, 0}}, nil); err != nil {
+		t.Fatal(err)
 	}
 	b.pump()
 	over := func() []string {

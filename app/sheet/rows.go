@@ -153,9 +153,7 @@ func (b *base) say(text string, bad bool) {
 
 // warnOf shows what the findings say of a parameter.
 func (b *base) warnOf(text string) {
-	if b.warn.DumpText() != text {
-		b.warn.SetText(text)
-	}
+	b.warn.SetText(text)
 }
 
 // row is one line of the panel.

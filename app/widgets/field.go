@@ -57,17 +57,11 @@ func (f *Field) say(text string) {
 	if text == "" {
 		text = f.hint
 	}
-	if f.Note.DumpText() != text {
-		f.Note.SetText(text)
-	}
-	want := widget.LowImportance
+	f.Note.Importance = widget.LowImportance
 	if f.bad {
-		want = widget.DangerImportance
+		f.Note.Importance = widget.DangerImportance
 	}
-	if f.Note.Importance != want {
-		f.Note.Importance = want
-		f.Note.Refresh()
-	}
+	f.Note.SetText(text)
 }
 
 func (f *Field) commit() {

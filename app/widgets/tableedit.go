@@ -196,8 +196,6 @@ func (t *Table) say() {
 	} else if t.Hint != nil {
 		text = t.Hint(t.selRow, t.selCol)
 	}
-	if t.Note.DumpText() != text || t.Note.Importance != importance {
-		t.Note.Importance = importance
-		t.Note.SetText(text)
-	}
+	t.Note.Importance = importance
+	t.Note.SetText(text)
 }

@@ -14,6 +14,13 @@ type Text struct {
 	widget.Label
 	whole string
 	wide  float32
+	drawn drawn // of what is shown
+}
+
+// drawn is what changes the looks of a text besides its words.
+type drawn struct {
+	importance widget.Importance
+	size       float32
 }
 
 // Wrapped is an empty text under a name for scripts; "" = none.
@@ -27,9 +34,14 @@ func Wrapped(name string) *Text {
 	return t
 }
 
-// SetText shows another text.
+// SetText shows another text, or the same in another importance or size.
 func (t *Text) SetText(text string) {
-	t.whole = text
+	size, _ := t.size()
+	now := drawn{t.Importance, size}
+	if text == t.whole && now == t.drawn {
+		return
+	}
+	t.whole, t.drawn = text, now
 	t.Label.SetText(t.broken())
 }
 
@@ -49,16 +61,21 @@ func (t *Text) DumpText() string { return t.whole }
 
 // broken is the text with line breaks where else a number would lose its unit.
 func (t *Text) broken() string {
-	th := t.Theme()
-	name := t.SizeName
-	if name == "" {
-		name = theme.SizeNameText
-	}
-	size, room := th.Size(name), t.wide-2*th.Size(theme.SizeNameInnerPadding)
+	size, padding := t.size()
+	room := t.wide - 2*padding
 	if room <= 0 {
 		return t.whole
 	}
 	return unbroken(t.whole, func(line string) bool { return fyne.MeasureText(line, size, t.TextStyle).Width <= room })
+}
+
+// size is that of the letters, with the room left and right of them.
+func (t *Text) size() (letters, padding float32) {
+	th, name := t.Theme(), t.SizeName
+	if name == "" {
+		name = theme.SizeNameText
+	}
+	return th.Size(name), th.Size(theme.SizeNameInnerPadding)
 }
 
 // bound are the spaces at which no line may break.

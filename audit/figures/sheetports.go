@@ -73,22 +73,38 @@ func (s *Sheet) FreePlace(kind string, x, y float64) (px, py float64) {
 	if !ok {
 		sym = unknownSymbol()
 	}
-	const reach = 60
-	box := grown(sym.Box(), 1)
+	by, _ := s.toClear(movedBox(sym.Box(), drawing.Pt{X: x, Y: y}), -1)
+	return x + by.X, y + by.Y
+}
+
+// clearReach is how far off a clear place is looked for [M].
+const clearReach = 60
+
+// toClear is the shortest way by which a box comes to lie a module beside all symbols, but for
+// that of one part (-1: none); ok is false where there is no room.
+func (s *Sheet) toClear(box drawing.Box, but int) (by drawing.Pt, ok bool) {
 	least := math.Inf(1)
-	px, py = x, y
-	for dy := -reach; dy <= reach; dy++ {
-		for dx := -reach; dx <= reach; dx++ {
-			d := math.Hypot(float64(dx), float64(dy))
-			if at := (drawing.Pt{X: x + float64(dx), Y: y + float64(dy)}); d < least && s.clear(movedBox(box, at)) {
-				least, px, py = d, at.X, at.Y
+	box = grown(box, 1)
+	for dy := -clearReach; dy <= clearReach; dy++ {
+		for dx := -clearReach; dx <= clearReach; dx++ {
+			to := drawing.Pt{X: float64(dx), Y: float64(dy)}
+			if d := math.Hypot(to.X, to.Y); d < least && s.clearBut(but, movedBox(box, to)) {
+				least, by, ok = d, to, true
 			}
 		}
 	}
-	return px, py
+	return by, ok
 }
 
 // clear tells whether a box lies beside all symbols.
-func (s *Sheet) clear(box drawing.Box) bool {
-	return !slices.ContainsFunc(s.parts, func(p part) bool { return shared(box, p.symbol.Box()) > 0 })
+func (s *Sheet) clear(box drawing.Box) bool { return s.clearBut(-1, box) }
+
+// clearBut is clear for all symbols but that of one part.
+func (s *Sheet) clearBut(but int, box drawing.Box) bool {
+	for i := range s.parts {
+		if i != but && shared(box, s.parts[i].symbol.Box()) > 0 {
+			return false
+		}
+	}
+	return true
 }

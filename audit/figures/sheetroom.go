@@ -1,15 +1,11 @@
 package figures
 
 import (
-	"math"
 	"slices"
 
 	"barlitre/circuit"
 	"barlitre/circuit/drawing"
 )
-
-// asideReach is how far off a block that gives way is put at most [M].
-const asideReach = 60
 
 // MakeRoom finds places for the blocks that other symbols of a changed circuit lie over, and
 // those they had did not: for each the nearest where it stands clear of all others, in the
@@ -53,35 +49,10 @@ func (s *Sheet) giveWay(i int, before *Sheet, moved map[string][2]float64) {
 			before.over(before.partOf(s.parts[i].id), before.partOf(o.id)) {
 			continue
 		}
-		if at, ok := s.aside(k); ok {
-			o.at = at
+		if by, ok := s.toClear(o.symbol.Box(), k); ok {
+			o.at = drawing.Pt{X: o.at.X + by.X, Y: o.at.Y + by.Y}
 			o.stand()
-			moved[o.id] = [2]float64{at.X, at.Y}
+			moved[o.id] = [2]float64{o.at.X, o.at.Y}
 		}
 	}
-}
-
-// aside is the nearest place for a part where it stands clear.
-func (s *Sheet) aside(k int) (best drawing.Pt, ok bool) {
-	from, own, least := s.parts[k].at, s.parts[k].symbol.Box(), math.Inf(1)
-	for dy := -asideReach; dy <= asideReach; dy++ {
-		for dx := -asideReach; dx <= asideReach; dx++ {
-			by := drawing.Pt{X: float64(dx), Y: float64(dy)}
-			if d := math.Hypot(by.X, by.Y); d < least && s.clearBut(k, movedBox(own, by)) {
-				best, least, ok = drawing.Pt{X: from.X + by.X, Y: from.Y + by.Y}, d, true
-			}
-		}
-	}
-	return best, ok
-}
-
-// clearBut tells whether a box lies a module beside all symbols but one.
-func (s *Sheet) clearBut(k int, box drawing.Box) bool {
-	box = grown(box, 1)
-	for i := range s.parts {
-		if i != k && shared(box, s.parts[i].symbol.Box()) > 0 {
-			return false
-		}
-	}
-	return true
 }

@@ -186,7 +186,8 @@ func Preferred(d Dim, s System) Unit {
 }
 
 // preferred is worked out once: pictures that move ask for it for every number in them.
-var preferred = sync.OnceValue(func() (list [dimCount][SI + 1]Unit) {
+var preferred = sync.OnceValue(func() *[dimCount][SI + 1]Unit {
+	var list [dimCount][SI + 1]Unit
 	for d := range list {
 		for s := range list[d] {
 			u, err := ParseUnit(quantities[d].preferred[s], Dim(d))
@@ -196,5 +197,5 @@ var preferred = sync.OnceValue(func() (list [dimCount][SI + 1]Unit) {
 			list[d][s] = u
 		}
 	}
-	return list
+	return &list
 })

@@ -158,6 +158,6 @@ func (c *clockRows) fill() {
 		c.how.Importance = importance
 		c.how.Refresh()
 	}
-	setText(c.how, c.p.ctx.Local(text))
+	c.how.SetText(c.p.ctx.Local(text))
 	show(c.how, text != "")
 }

@@ -167,7 +167,7 @@ func (c *cyclesTab) fill() {
 	second := units.Preferred(units.Time, units.SI)
 	c.from.SetValue(p.ctx.Local(units.Format(p.part.From, second, 6)), "")
 	c.to.SetValue(p.ctx.Local(units.Format(p.part.To, second, 6)), "")
-	setText(c.spread, p.ctx.Local(c.spreadText()))
+	c.spread.SetText(p.ctx.Local(c.spreadText()))
 	c.fillStack()
 	c.fillTable()
 }
@@ -282,7 +282,7 @@ func (c *cyclesTab) fillStack() {
 	default:
 		text = "The cycles over one another; a click on one below makes it the duty."
 	}
-	setText(c.none, p.ctx.Local(text))
+	c.none.SetText(p.ctx.Local(text))
 	c.states.Refresh()
 	show(c.stack, r != nil && len(r.Cycles) > 0)
 	if r == nil || len(r.Cycles) == 0 || d == nil {

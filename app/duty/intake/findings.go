@@ -36,7 +36,7 @@ func (f *findings) fill() {
 	case len(list) == 0:
 		text = fmt.Sprintf("Nothing is wrong with the %d rows: no gap, no doubled or unordered row, no clock that jumps, no channel that is stuck, clipped or out of its range. Nothing is changed.", len(p.rec.Time))
 	}
-	setText(f.head, text)
+	f.head.SetText(text)
 	shows := fmt.Sprint(p.corrections(), p.ctx.Local("0.0"))
 	if shows == f.shows {
 		return

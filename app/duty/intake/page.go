@@ -250,12 +250,6 @@ func show(o fyne.CanvasObject, on bool) {
 	}
 }
 
-func setText(l *widgets.Text, text string) {
-	if l.DumpText() != text {
-		l.SetText(text)
-	}
-}
-
 // say is a text over several lines.
 func say(text string, importance widget.Importance, bold bool) *widgets.Text {
 	l := widgets.Wrapped("")

@@ -77,12 +77,12 @@ func (t *tracks) fill() {
 		if x.Law == logged.AsMeasured && text == "" {
 			text = "as it was measured"
 		}
-		setText(r.says, p.ctx.Local(text))
+		r.says.SetText(p.ctx.Local(text))
 		fault := p.out.faults[x.Name]
 		if fault != "" {
 			fault = "⚠ " + fault
 		}
-		setText(r.fault, p.ctx.Local(fault))
+		r.fault.SetText(p.ctx.Local(fault))
 		show(r.fault, fault != "")
 		show(r.says, fault == "")
 	}
@@ -92,7 +92,7 @@ func (t *tracks) fill() {
 		t.add.ClearSelected()
 	}
 	t.fillAxes()
-	setText(t.works, p.ctx.Local(t.worksText()))
+	t.works.SetText(p.ctx.Local(t.worksText()))
 	t.ground.FillColor = p.ctx.Palette().Card
 	t.ground.Refresh()
 	t.fillPlot()
