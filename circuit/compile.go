@@ -3,6 +3,7 @@ package circuit
 import (
 	"math"
 	"sort"
+	"sync"
 
 	"barlitre/circuit/duty"
 	"barlitre/machines/units"
@@ -35,7 +36,8 @@ type Compiled struct {
 	electric int // number of electric nodes
 	slow     []slowState
 	portP    []portSignal
-	void     int // channel of the voids of all nodes
+	void     int       // channel of the voids of all nodes
+	solvers  sync.Pool // whose runs have ended
 }
 
 // mover is the actuator of an axis.

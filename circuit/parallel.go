@@ -114,7 +114,9 @@ func (p *parallel) join(ctx context.Context, chunks []*chunk, room <-chan struct
 		if i > 0 && (ch.err != nil || !ch.startsAt(st)) {
 			p.redone++
 			ch.start = st
-			ch.run(ctx, p.newRun(), p.cuts[i], p.cuts[i+1], parts.Part(p.cuts[i], p.cuts[i+1], chunks[i-1].last))
+			r := p.newRun()
+			ch.run(ctx, r, p.cuts[i], p.cuts[i+1], parts.Part(p.cuts[i], p.cuts[i+1], chunks[i-1].last))
+			r.end()
 		}
 		cert = cert.plus(ch.cert)
 		if err := parts.Join(ch.part); err != nil {
@@ -139,6 +141,7 @@ func (p *parallel) join(ctx context.Context, chunks []*chunk, room <-chan struct
 // guess balances a chunk from a start of its own.
 func (p *parallel) guess(ctx context.Context, ch *chunk, i int, parts PartReceiver) {
 	from, r := p.cuts[i], p.newRun()
+	defer r.end()
 	var before *Sample
 	if from > 0 {
 		if ch.start, _, ch.err = r.all(ctx, State{}, from-leadSteps, from, Receivers{}); ch.err != nil {

@@ -38,7 +38,9 @@ func Run(ctx context.Context, c *Compiled, params []float64, s *duty.Series, con
 	if err := c.fits(params, s); err != nil {
 		return st, Certificate{}, err
 	}
-	return newRun(c, params, cond, s).all(ctx, st, 0, len(s.T), to)
+	r := newRun(c, params, cond, s)
+	defer r.end()
+	return r.all(ctx, st, 0, len(s.T), to)
 }
 
 // fits reports what parameters or a series lack to be those of the circuit.
@@ -80,7 +82,7 @@ type run struct {
 }
 
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
-	r := &run{Compiled: c, solver: balance.NewSolver(c.n), series: s, params: params, leak: leak}
+	r := &run{Compiled: c, solver: c.newSolver(), series: s, params: params, leak: leak}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
 	r.ev = eval{known: slot(c.nfix), all: make([]float64, c.nfix+c.n), rows: r.solver.Border(c.nfix)}
 	r.step = step{axes: make([]axisStep, len(c.axes)), atRest: c.circuit.PumpAtRest, solver: r.solver,
@@ -123,6 +125,22 @@ func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run
 	r.book.room(len(c.channels), c.electric)
 	r.sample = Sample{Signals: r.book.sig, Power: r.book.pow, Pulse: r.book.pulse, Axes: make([]AxisNow, len(c.axes)), Void: make([]float64, len(c.nodes))}
 	return r
+}
+
+// newSolver returns a solver that has learned nothing; if there is one, that of a run that
+// has ended, whose memory it takes over.
+func (c *Compiled) newSolver() *balance.Solver {
+	if s, ok := c.solvers.Get().(*balance.Solver); ok {
+		s.Reset()
+		return s
+	}
+	return balance.NewSolver(c.n)
+}
+
+// end hands the memory of the solver on. The run cannot go on after it.
+func (r *run) end() {
+	r.solvers.Put(r.solver)
+	r.solver, r.step.solver = nil, nil
 }
 
 // flowScale is the flow of the largest machine at full speed, at least 1 L/min.

@@ -12,7 +12,7 @@ import "math"
 // (1957), among pivots of at least a tenth of their column (rows scaled).
 type plan struct {
 	key     []uint64 // which unknowns rest on a bound
-	entries int      // of the slopes it was made for
+	entries int      // of the slopes when it was made; it counts on those that came later being zero
 	none    []int32  // entries that were zero when it was made, and count on being so
 	sparse  bool     // false: singular when it was made
 	bad     int      // times a pivot was too small
@@ -50,7 +50,7 @@ const (
 func (p *plan) run(n int, val, work []float64) bool {
 	work = work[:p.size]
 	entries := work[2*n:]
-	clear(entries[copy(entries, val):])
+	clear(entries[copy(entries, val[:p.entries]):])
 	code, at := p.pivots, 0
 	for _, least := range p.least {
 		pivot, row := code[at], code[at+1]

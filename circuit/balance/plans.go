@@ -55,8 +55,7 @@ func (ps *plans) get(j *Slopes, maker *planner) *plan {
 // forgotten: those that still serve are soon made again.
 func (ps *plans) unused() *plan {
 	if ps.count == mostPlans {
-		clear(ps.of)
-		ps.count = 0
+		ps.forget()
 	}
 	if ps.count == len(ps.made) {
 		ps.made = append(ps.made, &plan{})
@@ -65,10 +64,21 @@ func (ps *plans) unused() *plan {
 	return ps.made[ps.count-1]
 }
 
+// forget gives up all plans, but not their memory.
+func (ps *plans) forget() {
+	clear(ps.of)
+	ps.count, ps.last = 0, nil
+}
+
 // fits reports whether p was made for this key and pattern, and works.
 func (p *plan) fits(key []uint64, j *Slopes) bool {
-	if p.entries != len(j.val) || p.bad > pivotBad || !p.met(key) {
+	if p.bad > pivotBad || !p.met(key) {
 		return false
+	}
+	for _, v := range j.val[p.entries:] {
+		if v != 0 {
+			return false
+		}
 	}
 	for _, k := range p.none {
 		if j.val[k] != 0 {

@@ -7,14 +7,17 @@ import "math"
 type Slopes struct {
 	n          int
 	known      int     // rows and columns before the first that count for nothing
-	at         []int32 // (known+n)²: index into val
-	side, zero int     // known+n, and the place of row 0, column 0 in it
+	side, zero int     // known+n, and the place of row 0, column 0 in at
+	at         []int32 // side²: index into val
 	val        []float64
 	row, col   []int32 // of each entry
 
 	steady  []float64 // by entry: that part of val which stays as it is from one evaluation to the next
 	stale   bool      // until something changes it
 	stating bool      // an evaluation states it anew
+
+	tried      []int32 // room for grow
+	sums, rest []float64
 }
 
 // The first entries take what has no place yet, and what counts for nothing.
@@ -25,19 +28,28 @@ const (
 )
 
 func newSlopes(n int) *Slopes {
-	j := &Slopes{n: n, val: make([]float64, firstEntry), steady: make([]float64, firstEntry), row: make([]int32, firstEntry), col: make([]int32, firstEntry)}
+	j := &Slopes{n: n}
 	j.border(0)
 	return j
 }
 
-// border makes room for known numbers, −1, −2, … −known.
+// border makes room for known numbers, −1, −2, … −known, and forgets all entries.
 func (j *Slopes) border(known int) {
 	side := known + j.n
 	j.known, j.side, j.zero, j.stale = known, side, known*side+known, true
-	j.at = make([]int32, side*side)
-	for i := range j.at {
-		if i/side < known || i%side < known {
-			j.at[i] = noMatter
+	for _, of := range []*[]float64{&j.val, &j.steady} {
+		*of = append((*of)[:0], make([]float64, firstEntry)...)
+	}
+	for _, of := range []*[]int32{&j.row, &j.col} {
+		*of = append((*of)[:0], make([]int32, firstEntry)...)
+	}
+	if len(j.at) != side*side {
+		j.at = make([]int32, side*side)
+	}
+	clear(j.at) // noPlace
+	for r := range known {
+		for c := range side {
+			j.at[r*side+c], j.at[c*side+r] = noMatter, noMatter
 		}
 	}
 }
@@ -110,17 +122,18 @@ func (j *Slopes) once(p Problem, x, g []float64) bool {
 // grow gives a place to every entry that p adds to at x.
 func (j *Slopes) grow(p Problem, x, g []float64) {
 	at, val, steady := j.at, j.val, j.steady
-	j.at, j.val = append([]int32(nil), at...), append([]float64(nil), val...)
+	tried, sums := append(j.tried[:0], at...), append(j.sums[:0], val...)
 	for i, k := range at {
 		if k == noPlace { // a place of its own, for this once
-			j.at[i] = int32(len(j.val))
-			j.val = append(j.val, untouched)
+			tried[i] = int32(len(sums))
+			sums = append(sums, untouched)
 		}
 	}
-	j.steady = make([]float64, len(j.val))
+	rest := append(j.rest[:0], sums...)
+	j.at, j.val, j.steady = tried, sums, rest
 	p.Eval(x, g, j)
-	tried, sums := j.at, j.val
 	j.at, j.val, j.steady = at, val, steady
+	j.tried, j.sums, j.rest = tried, sums, rest
 	for i, k := range at {
 		if k == noPlace && touched(sums[tried[i]]) {
 			j.place(i)

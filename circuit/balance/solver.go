@@ -97,19 +97,31 @@ func NewSolver(n int) *Solver {
 		*p = make([]float64, n)
 	}
 	s.Border(0)
-	for i := 0; i < n; i++ {
-		s.Lo[i], s.Hi[i], s.Weight[i] = math.Inf(-1), math.Inf(1), 1
-	}
+	s.Reset()
 	return s
+}
+
+// Reset makes s as new, but for what Border was told: all it has learned is forgotten, only
+// its memory is kept.
+func (s *Solver) Reset() {
+	for i := range s.Lo {
+		s.Lo[i], s.Hi[i], s.Weight[i], s.Long[i] = math.Inf(-1), math.Inf(1), 1, false
+	}
+	s.Foretell, s.far, s.now = false, false, point{}
+	s.j.border(s.j.known)
+	s.plans.forget()
+	s.past.forget()
 }
 
 // Border lets the problem count known numbers, from −1 down to −known, as unknowns:
 // their rows and slopes are taken and not looked at. It returns where the problem will
 // find its rows, with the known ones before them.
 func (s *Solver) Border(known int) []float64 {
-	s.j.border(known)
-	s.rows = make([]float64, known+s.n)
-	s.g = s.rows[known:]
+	if s.rows == nil || known != s.j.known {
+		s.j.border(known)
+		s.rows = make([]float64, known+s.n)
+		s.g = s.rows[known:]
+	}
 	return s.rows
 }
 
