@@ -2,14 +2,21 @@ package balance
 
 import "math"
 
-// newton iterates on the min/max form until the norm is below tolerance. It
+// newton iterates on the min/max form from x until the norm is below tolerance. It
 // returns whether it got there and the iterations used.
 func (s *Solver) newton(p Problem, x []float64, maxIt int) (bool, int) {
-	return s.iterate(p, x, aim{}, maxIt)
+	return s.from(p, x, aim{}, maxIt)
 }
 
+// from evaluates the problem at x and iterates.
+func (s *Solver) from(p Problem, x []float64, a aim, maxIt int) (bool, int) {
+	s.norm(p, x, a, true)
+	return s.iterate(p, x, a, maxIt)
+}
+
+// iterate goes on from x, where the problem is evaluated with slopes.
 func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
-	norm := s.norm(p, x, a, true)
+	norm := s.now.norm
 	for i := range s.hist {
 		s.hist[i] = norm
 	}
@@ -45,9 +52,16 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			return false, it
 		}
 		norm = s.lineSearch(p, x, a, planned)
+		if norm > lostShare*max(1, before) {
+			return false, it + 1
+		}
 		s.hist[it%len(s.hist)] = norm
 	}
 }
+
+// lostShare is by how much the norm may grow in a step that no shortening helps; beyond it nothing
+// is found any more.
+const lostShare = 1e3
 
 // again takes another step with the factors of the point before, whose slopes
 // are near enough when the last step went far. It leaves x as it is when that

@@ -140,20 +140,45 @@ func (s *Solver) Row(i int) float64 { return s.g[i] }
 // (0 = the usual one, 1.. = others); it is called only when the start fails.
 func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, x []float64)) Result {
 	copy(s.start, x)
-	if s.Foretell && s.past.guess(x, s.Lo, s.Hi) {
-		if ok, it := s.newton(p, x, 5); ok {
-			s.past.keep(x, it > 2)
-			return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
-		}
-		copy(x, s.start)
+	foretold := s.Foretell && s.past.guess(x, s.Lo, s.Hi)
+	s.norm(p, x, aim{}, true)
+	if foretold && s.now.norm > poorGuess {
+		foretold = s.keepGuess(p, x)
 	}
-	ok, it := s.newton(p, x, 15)
+	ok, it := s.iterate(p, x, aim{}, warmSteps)
+	if !ok && foretold {
+		copy(x, s.start)
+		more := 0
+		ok, more = s.newton(p, x, warmSteps)
+		it += more
+	}
 	if ok {
 		s.past.keep(x, it > 2)
 		return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
 	}
 	s.past.forget()
 	return s.ladder(p, x, it, levels, cold)
+}
+
+// A guess that leaves more than poorGuess is weighed against where it started; warmSteps bounds
+// the iterations from either.
+const (
+	poorGuess = 1e-3
+	warmSteps = 15
+)
+
+// keepGuess goes back to the start from a guess that leaves more than the start does, and reports
+// whether it stays with the guess.
+func (s *Solver) keepGuess(p Problem, x []float64) bool {
+	guessed := s.now.norm
+	copy(s.best, x)
+	copy(x, s.start)
+	if s.norm(p, x, aim{}, true) < guessed {
+		return false
+	}
+	copy(x, s.best)
+	s.norm(p, x, aim{}, true)
+	return true
 }
 
 // ladder goes on where Newton from the step before has ended, after total iterations.
@@ -215,7 +240,7 @@ func (s *Solver) restart(x []float64, from int, cold func(int, []float64)) {
 // smooth runs Fischer-Burmeister and then a few min/max steps, which make the
 // bounds exact.
 func (s *Solver) smooth(p Problem, x []float64, maxIt int) (bool, int) {
-	ok, it := s.iterate(p, x, aim{smooth: true, loose: 100}, maxIt)
+	ok, it := s.from(p, x, aim{smooth: true, loose: 100}, maxIt)
 	if !ok {
 		return false, it
 	}
@@ -263,7 +288,7 @@ func (s *Solver) transient(p Problem, x []float64, delta float64) (bool, int) {
 	old := s.norm(p, x, aim{}, false)
 	for step := 0; step < 120; step++ {
 		copy(s.anchor, x[:s.n])
-		_, it := s.iterate(p, x, aim{smooth: true, loose: 100, delta: delta}, 4)
+		_, it := s.from(p, x, aim{smooth: true, loose: 100, delta: delta}, 4)
 		total += it
 		now := s.norm(p, x, aim{}, false)
 		if math.IsInf(now, 1) {
