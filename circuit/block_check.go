@@ -47,9 +47,7 @@ func (m *checkModel) bind(b *binding) {
 func (m *checkModel) begin(*step) {}
 
 func (m *checkModel) eval(e *eval) {
-	q := e.branch(m.in, m.out, m.q)
-	r, dr := m.t.at(q)
-	e.drop(m.in, m.out, m.q, m.opens+r, dr)
+	e.throttle(m.in, m.out, m.q, &m.t, m.opens, 0)
 }
 
 func (m *checkModel) book(k *booking) { k.through(m.in, m.out, k.val(m.q), m.qIn, m.qOut, m.loss) }

@@ -52,9 +52,7 @@ func (m *compensatorModel) bind(b *binding) {
 func (m *compensatorModel) begin(*step) {}
 
 func (m *compensatorModel) eval(e *eval) {
-	q := e.branch(m.P, m.A, m.q)
-	r, dr := m.t.at(q)
-	e.drop(m.P, m.A, m.q, r+e.val(m.z), dr)
+	e.throttle(m.P, m.A, m.q, &m.t, e.val(m.z), 0)
 	// More throttling lowers pA: the row rises with z.
 	e.add(m.z, m.held-(e.val(m.A)-e.val(m.ls)))
 	if e.steady == nil {

@@ -60,9 +60,7 @@ func (m *flowControl3Model) begin(*step) {}
 
 func (m *flowControl3Model) eval(e *eval) {
 	P := m.way.a
-	q := e.branch(P, m.A, m.q)
-	r, dr := m.t.at(q)
-	e.drop(P, m.A, m.q, r, dr)
+	e.throttle(P, m.A, m.q, &m.t, 0, math.Inf(-1))
 	m.way.eval(e)
 	// More throttling of the by-pass raises pP: the row rises with z.
 	e.add(m.way.z, e.val(P)-e.val(m.A)-m.held)

@@ -63,9 +63,7 @@ func (m *orificeModel) bind(b *binding) {
 func (m *orificeModel) begin(*step) {}
 
 func (m *orificeModel) eval(e *eval) {
-	q := e.branch(m.A, m.B, m.q)
-	r, dr := m.t.at(q)
-	e.drop(m.A, m.B, m.q, r, dr)
+	e.throttle(m.A, m.B, m.q, &m.t, 0, math.Inf(-1))
 }
 
 func (m *orificeModel) book(k *booking) { k.through(m.A, m.B, k.val(m.q), m.qA, m.qB, m.loss) }

@@ -72,12 +72,8 @@ func (m *unloadingModel) begin(s *step) {
 }
 
 func (m *unloadingModel) eval(e *eval) {
-	qA := e.branch(m.P, m.A, m.qA)
-	r, dr := m.check.at(qA)
-	e.drop(m.P, m.A, m.qA, m.opens+r, dr)
-	qT := e.branch(m.P, m.T, m.qT)
-	r, dr = m.open.at(qT)
-	e.drop(m.P, m.T, m.qT, r, dr)
+	e.throttle(m.P, m.A, m.qA, &m.check, m.opens, 0)
+	e.throttle(m.P, m.T, m.qT, &m.open, 0, 0)
 }
 
 func (m *unloadingModel) book(k *booking) {

@@ -291,9 +291,7 @@ func (m *valveModel) eval(e *eval) {
 			e.add(q, e.val(q))
 			e.same(q, q, 1)
 		case m.dir == 0:
-			v := e.branch(br.a, br.b, q)
-			r, dr := br.t.at(v)
-			e.drop(br.a, br.b, q, r, dr)
+			e.throttle(br.a, br.b, q, &br.t, 0, math.Inf(-1))
 		case i == 1 && m.out.open >= 0:
 			m.evalEdge(e, br, q, e.val(m.out.open), m.out.open)
 		case m.now:

@@ -35,11 +35,9 @@ func (m *gate) bindGate(b *binding) {
 
 // evalGate adds both ways; lift adds the row of s.
 func (m *gate) evalGate(e *eval) {
-	q1 := e.branch(m.V, m.C, m.q1)
-	r, dr := m.free.at(q1)
-	e.drop(m.V, m.C, m.q1, m.opens+r, dr)
+	e.throttle(m.V, m.C, m.q1, &m.free, m.opens, 0)
 	q2, s := e.branch(m.C, m.V, m.q2), e.val(m.s)
-	r, dr = m.back.at(q2)
+	r, dr := m.back.at(q2)
 	dp := e.val(m.C) - e.val(m.V)
 	e.add(m.q2, r+(1-s)*m.closed*q2+minResistance*q2-(s+m.seat)*dp)
 	e.d(m.q2, m.q2, dr+(1-s)*m.closed+minResistance)

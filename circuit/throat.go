@@ -62,3 +62,40 @@ func (t *throat) chord(dp, full, q, tangent float64) float64 {
 	}
 	return tangent
 }
+
+// steer is chord for rows that are drops: the slope that leads from a flow q with its drop r to
+// the flow that a drop dp belongs to, or to the least flow there may be.
+func (t *throat) steer(q, r, dp, tangent, least float64) float64 {
+	if math.Abs(dp-r) <= 0.5*max(math.Abs(dp), math.Abs(r)) || t.perK2 == 0 || (q <= least && dp <= 0) {
+		return tangent
+	}
+	to, _ := t.flow(dp)
+	if s := (dp - r) / (max(to, least) - q); s > 0 && !math.IsInf(s, 1) {
+		return s
+	}
+	return tangent
+}
+
+// throttle adds the flow unknown q through a throat from a to b, and its row: Δp(q) = pa − pb − opens,
+// with q >= least by its bounds. Nodes are as those of branch.
+func (e *eval) throttle(a, b, q slot, t *throat, opens, least float64) {
+	all, rows, known := e.all, e.rows, e.known
+	v, dp := all[q+known], all[a+known]-all[b+known]
+	r, dr := t.at(v)
+	rows[a+known] += v
+	rows[b+known] -= v
+	rows[q+known] += opens + r + minResistance*v - dp
+	if e.slopes == nil {
+		return
+	}
+	if !e.slopes.Tangent {
+		dr = t.steer(v, r, dp-opens, dr, least)
+	}
+	e.slopes.Add(int(q), int(q), dr+minResistance)
+	if e.steady != nil {
+		e.same(a, q, 1)
+		e.same(b, q, -1)
+		e.same(q, a, -1)
+		e.same(q, b, 1)
+	}
+}

@@ -26,9 +26,7 @@ func (w *regulated) bind(b *binding, t throat) {
 
 // eval adds the flow and its row: pa − pb = Δp(q) + z.
 func (w *regulated) eval(e *eval) {
-	q := e.branch(w.a, w.b, w.q)
-	r, dr := w.t.at(q)
-	e.drop(w.a, w.b, w.q, r+e.val(w.z), dr)
+	e.throttle(w.a, w.b, w.q, &w.t, e.val(w.z), 0)
 	e.d(w.q, w.z, 1)
 }
 
@@ -77,9 +75,7 @@ func (w *returnCheck) eval(e *eval) {
 	if w.q < 0 {
 		return
 	}
-	q := e.branch(w.a, w.b, w.q)
-	r, dr := w.t.at(q)
-	e.drop(w.a, w.b, w.q, w.opens+r, dr)
+	e.throttle(w.a, w.b, w.q, &w.t, w.opens, 0)
 }
 
 // book books the loss and returns the flow.
@@ -122,9 +118,7 @@ func (k *compiler) checkedThrottle(b *Block, loss string) checkedThrottle {
 func (m *checkedThrottle) begin(*step) {}
 
 func (m *checkedThrottle) eval(e *eval) {
-	q := e.branch(m.A, m.B, m.q)
-	r, dr := m.t.at(q)
-	e.drop(m.A, m.B, m.q, r, dr)
+	e.throttle(m.A, m.B, m.q, &m.t, 0, math.Inf(-1))
 	m.back.eval(e)
 }
 

@@ -16,6 +16,9 @@ type Slopes struct {
 	stale   bool      // until something changes it
 	stating bool      // an evaluation states it anew
 
+	// Tangent asks for true derivatives; else those that lead on from flat places may stand in.
+	Tangent bool
+
 	tried      []int32 // room for grow
 	sums, rest []float64
 }

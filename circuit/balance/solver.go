@@ -157,6 +157,8 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 		return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
 	}
 	s.past.forget()
+	s.j.Tangent = true
+	defer func() { s.j.Tangent = false }()
 	return s.ladder(p, x, it, levels, cold)
 }
 
