@@ -29,6 +29,9 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 		if a.loose > 0 {
 			tol *= a.loose
 		}
+		if tol > Tol && !a.smooth && !s.onBounds(x) {
+			tol = Tol
+		}
 		if repeated { // what old factors leave tends to lie in one row, and must be far below tolerance
 			if norm <= tol/64 {
 				return true, it
@@ -79,10 +82,21 @@ func (s *Solver) again(p Problem, x []float64, norm float64) bool {
 	return false
 }
 
+// onBounds reports whether unknowns that rest on a bound do so to the rounding of their own size: a
+// tolerance that has grown with the size of others is not for them.
+func (s *Solver) onBounds(x []float64) bool {
+	for i, r := range s.r {
+		if bit(s.plans.key, i) && math.Abs(r) > s.Weight[i]*Tol*max(1, math.Abs(x[i])) {
+			return false
+		}
+	}
+	return true
+}
+
 // tol grows with the size of the unknowns, as what rounding leaves of a residual
 // does, but not without end: an unknown that runs away is no solution.
 func (s *Solver) tol(x []float64) float64 {
-	return Tol * (1 + 0.1*math.Min(s.largest(x), 1e3))
+	return Tol * (1 + 0.1*min(s.largest(x), mostSize))
 }
 
 // largest is the size of the largest unknown.
@@ -96,8 +110,11 @@ func (s *Solver) largest(x []float64) float64 {
 	return m
 }
 
-// mostTol is the largest that tol returns.
-const mostTol = 101 * Tol
+// mostSize is the largest unknown that tolerances grow with; mostTol is the largest that tol returns.
+const (
+	mostSize = 1e3
+	mostTol  = (1 + 0.1*mostSize) * Tol
+)
 
 // rounded reports whether the residual is within tolerance of what rounding of
 // the unknowns can leave in steep rows: rows are weighed by their largest slope,
@@ -112,7 +129,7 @@ func (s *Solver) rounded(p Problem, x []float64, a aim, tol float64) bool {
 		i := s.j.row[k+firstEntry]
 		steep[i] = max(steep[i], math.Abs(v))
 	}
-	sum, fine := 0.0, 1e-4*max(1, s.largest(x)/10)
+	sum, fine := 0.0, 1e-4*max(1, min(s.largest(x), mostSize)/10)
 	for i, r := range s.r {
 		if _, _, wg := a.row(x[i], s.g[i], s.Lo[i], s.Hi[i], s.Weight[i]); wg != 0 {
 			r /= max(1, fine*steep[i])
