@@ -29,3 +29,21 @@ func TestThroat(t *testing.T) {
 		t.Errorf("an ideal opening drops %g, slope %g", r, dr)
 	}
 }
+
+// Where flow and drop lie far apart the slope leads to the flow that the drop belongs to, or to the
+// least there may be; near by it is the tangent.
+func TestSteer(t *testing.T) {
+	h := throatOf(0.6, 0.05)
+	for _, c := range []struct{ q, dp, least float64 }{{0, 0.02, 0}, {1e-7, 0.3, 0}, {-0.2, 0.3, math.Inf(-1)}, {0.4, -0.1, math.Inf(-1)}, {0.4, -0.1, 0}} {
+		r, tangent := h.at(c.q)
+		want, _ := h.flow(c.dp)
+		want = max(want, c.least)
+		if got := c.q + (c.dp-r)/h.steer(c.q, r, c.dp, tangent, c.least); math.Abs(got-want) > 1e-12 {
+			t.Errorf("from flow %g to drop %g: %g, want %g", c.q, c.dp, got, want)
+		}
+	}
+	r, tangent := h.at(0.3)
+	if got := h.steer(0.3, r, 1.1*r, tangent, 0); got != tangent {
+		t.Errorf("near by: %g, tangent %g", got, tangent)
+	}
+}

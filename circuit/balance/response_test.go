@@ -59,3 +59,12 @@ func TestResponse(t *testing.T) {
 		}
 	}
 }
+
+// Where nothing determines an unknown its response is without end.
+func TestResponseOfTheUndetermined(t *testing.T) {
+	s, x, got := NewSolver(2), []float64{1, 5}, make([]float64, 2)
+	s.Response(problem{2, func(x, g []float64) { g[0], g[1] = x[0]-1, 0 }}, x, []int{1}, got[:1])
+	if !math.IsInf(got[0], 1) {
+		t.Errorf("a free unknown responds by %g", got[0])
+	}
+}
