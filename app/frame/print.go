@@ -27,7 +27,7 @@ func (f *Frame) printItems() *fyne.MenuItem {
 	m := fyne.NewMenuItem("Sheets as PDF", nil)
 	m.ChildMenu = fyne.NewMenu("")
 	for _, p := range pdf.Papers {
-		m.ChildMenu.Items = append(m.ChildMenu.Items, fyne.NewMenuItem(p.Name+" lying…", func() {
+		m.ChildMenu.Items = append(m.ChildMenu.Items, fyne.NewMenuItem(p.Name+" landscape…", func() {
 			if !f.asking() {
 				f.printSheets(p)
 			}
