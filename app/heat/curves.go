@@ -112,6 +112,8 @@ func (c *curves) load() {
 		return
 	case pending:
 		why = pendingText(c.ctx)
+	case waits(c.ctx, sol):
+		why = "How warm the oil gets stands here as soon as there is a result."
 	case why == "":
 		why = "How warm the oil gets stands here once the audit knows the tank: type the oil in the tank under Tank, cooler and air, at the right, and then the cooler if there is one."
 	}
