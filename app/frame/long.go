@@ -130,9 +130,9 @@ func (l *long) fill() {
 func (t told) text() string {
 	switch over := t.done >= t.total; {
 	case t.file == "" && over && t.total > 0:
-		return "The last change is balanced; the pages are drawn."
+		return "The circuits are balanced; the pages are being drawn."
 	case t.file == "":
-		return "The last change is balanced first."
+		return "The circuits as they stand are being balanced first."
 	case over:
 		return t.file + " is read; what comes of it is worked out."
 	}
