@@ -38,7 +38,7 @@ func parseSheet(args []string, errs io.Writer) (c sheetCall, err error) {
 	})
 	f.StringVar(&c.duty, "duty", "", "results of this `DUTY`; with neither duty nor time those where most power is drawn")
 	f.StringVar(&c.at, "at", "", "results at this `TIME` of the duty, such as 2.5 s")
-	f.StringVar(&c.size, "paper", pdf.A4.Name, "`A4` or A3, lying")
+	f.StringVar(&c.size, "paper", pdf.A4.Name, "`A4` or A3, landscape")
 	f.BoolVar(&c.cycle, "cycle", false, "discs show the heat of the cycle, not of the instant")
 	f.Func("hide", "leave `SIGNS` out, with commas between: tint,width,chevrons,discs,numbers", c.hideSigns)
 	system := f.String("units", "metric", "units of the drawing: `metric`, us or si")

@@ -13,6 +13,9 @@ type solver func(ctx context.Context, f *audit.File, opt audit.Options) (*audit.
 // progressEvery keeps progress from flooding a window's event queue.
 const progressEvery = 50 * time.Millisecond
 
+// settleEvery is how often what waits for a solution looks for it.
+const settleEvery = 10 * time.Millisecond
+
 // Solution returns the last solution that finished and its revision; nil and 0 when
 // there is none of the present audit. It is only to be read.
 func (d *Document) Solution() (s *audit.Solution, revision int) {
@@ -30,17 +33,33 @@ func (d *Document) Current() bool {
 
 func (d *Document) current() bool { return d.solution != nil && d.solved == d.now.revision }
 
-// Settled returns the solution of the audit as it stands, with its oil temperatures, for
-// what is handed over: the one that is there, or it is worked out here, which may take a
-// while. It never is that of an earlier revision. The error is that of audit.Solve.
+// Settled returns the solution of the audit as it stands when it is called, with its oil
+// temperatures, for what is handed over: the one that is there or is being worked out, which is
+// waited for, or else it is worked out here. It never is that of another revision. The error is
+// that of audit.Solve.
 func (d *Document) Settled(ctx context.Context, progress func(done, total int)) (*audit.Solution, error) {
 	d.mu.Lock()
-	s, file, current := d.solution, d.now.file, d.current()
+	now := d.now
 	d.mu.Unlock()
-	if current {
-		return s.Warm(ctx)
+	for {
+		d.mu.Lock()
+		s, same, current := d.solution, d.now.revision == now.revision, d.current()
+		coming, done, total := (d.wanted != 0 || d.warming) && !d.closed, d.done, d.total
+		d.mu.Unlock()
+		switch {
+		case !same || !current && !coming:
+			return audit.Solve(ctx, now.file, audit.Options{Progress: progress})
+		case !coming:
+			return s.Warm(ctx)
+		case progress != nil:
+			progress(done, total)
+		}
+		select {
+		case <-ctx.Done():
+			return nil, ctx.Err()
+		case <-time.After(settleEvery):
+		}
 	}
-	return audit.Solve(ctx, file, audit.Options{Progress: progress})
 }
 
 // Solving reports whether the present revision is being solved, and how far that is;

@@ -39,7 +39,7 @@ func newAxisRows(p *panel, a cycle.Axis) *axisRows {
 		rows.Add(container.NewHBox(r.both))
 		sign := widgets.Wrapped("")
 		sign.Importance = widget.LowImportance
-		sign.SetText("  " + signs)
+		sign.SetText(signs)
 		rows.Add(sign)
 	}
 	r.content = rows

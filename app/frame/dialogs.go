@@ -63,7 +63,7 @@ func (f *Frame) open(path string) { f.openThen(path, func() {}) }
 // openThen is open; next is called when that is over, whether it worked or not.
 func (f *Frame) openThen(path string, next func()) {
 	var problems []circuit.Finding
-	f.perform("Opening "+filepath.Base(path), func(ctx context.Context, tell document.Progress) (err error) {
+	f.Perform("Opening "+filepath.Base(path), func(ctx context.Context, tell document.Progress) (err error) {
 		problems, err = f.doc.OpenWith(ctx, path, tell)
 		return err
 	}, func(err error) {
@@ -236,7 +236,7 @@ func (f *Frame) save(then func()) {
 
 // saveUnder saves under a name, with the recordings.
 func (f *Frame) saveUnder(path string, then func()) {
-	f.perform("Saving "+filepath.Base(path), func(ctx context.Context, tell document.Progress) error { return f.doc.SaveAsWith(ctx, path, tell) },
+	f.Perform("Saving "+filepath.Base(path), func(ctx context.Context, tell document.Progress) error { return f.doc.SaveAsWith(ctx, path, tell) },
 		func(err error) { f.saved(err, then) })
 }
 
@@ -255,21 +255,13 @@ func (f *Frame) saved(err error, then func()) {
 	}
 }
 
-// saveAs asks for a name. Scripts may give a folder instead.
+// saveAs asks for a name; in scripts it is always the same.
 func (f *Frame) saveAs(then func()) {
-	if dir := os.Getenv(saveDirVariable); dir != "" {
-		f.saveUnder(filepath.Join(dir, "audit.yaml"), then)
-		return
+	name := f.suggestedName()
+	if os.Getenv(saveDirVariable) != "" {
+		name = "audit.yaml"
 	}
-	d := dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
-		if err != nil {
-			f.Fail(err)
-		} else if w != nil {
-			f.saveUnder(station.Chosen(w, ""), then) // the document writes beside and renames, so that a crash loses nothing
-		}
-	}, f.win)
-	d.SetFileName(f.suggestedName())
-	f.showFiles(d, "Save the audit as", "Save")
+	f.PickPlace("Save the audit as", name, func(path string) { f.saveUnder(path, then) })
 }
 
 // suggestedName is the name that a file dialog begins with: that of the open file or sample.
@@ -282,9 +274,6 @@ func (f *Frame) suggestedName() string {
 	}
 	return "audit.yaml"
 }
-
-// saveDirVariable names the folder that scripts save into, without a dialog.
-const saveDirVariable = station.SaveDirVariable
 
 // offerRecovery offers what an earlier run kept before it ended without closing.
 func (f *Frame) offerRecovery() {
@@ -308,7 +297,7 @@ func (f *Frame) offerRecovery() {
 }
 
 func (f *Frame) recover(r document.Recovery) {
-	f.perform("Recovering "+r.Name, func(ctx context.Context, tell document.Progress) error { return f.doc.RecoverWith(ctx, r, tell) }, func(err error) {
+	f.Perform("Recovering "+r.Name, func(ctx context.Context, tell document.Progress) error { return f.doc.RecoverWith(ctx, r, tell) }, func(err error) {
 		switch {
 		case f.cancelled(err, "What was kept is still there, and is offered at the next start."):
 		case err != nil:

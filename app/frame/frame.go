@@ -31,6 +31,7 @@ type Frame struct {
 
 	clock    float64
 	duty     int
+	gone     int // counts what was gone to: what is found for one before is of no use then
 	circuit  int
 	block    string
 	beside   string // the circuit picked, "" = the first
@@ -192,10 +193,11 @@ func (f *Frame) told(e document.Event) {
 // reset goes to the start of what was just opened.
 func (f *Frame) reset() {
 	f.clock, f.duty, f.circuit, f.block, f.beside = 0, 0, -1, "", ""
+	f.gone++
 	f.solution, f.solved = f.doc.Solution()
 	if file := f.doc.File(); file != nil && len(file.Duties) > 0 {
-		f.duty = file.DutiesByYear()[0]
-		f.clock = f.firstMotion()
+		f.clock, _ = f.span()
+		f.find(opening)
 	}
 	f.changed(station.Everything)
 }
@@ -212,18 +214,6 @@ func (f *Frame) keepInRange() {
 	}
 	from, to := f.span()
 	f.clock = math.Max(from, math.Min(to, f.clock))
-}
-
-// firstMotion is a time at which something moves, so that the first picture shows it.
-func (f *Frame) firstMotion() float64 {
-	d := f.doc.File().Duties[f.duty]
-	switch { // a faulty duty has findings, and no course
-	case len(d.Time) == 0:
-		return 0
-	case len(d.Check()) > 0:
-		return d.Time[0]
-	}
-	return d.Busiest(f.doc.File().Axes)
 }
 
 // span is the time of the duty at hand [s].
@@ -253,6 +243,7 @@ func (f *Frame) moveClock(t float64, tell station.What) {
 	from, to := f.span()
 	t = math.Max(from, math.Min(to, t))
 	if t != f.clock && !math.IsNaN(t) {
+		f.gone++
 		f.clock = t
 		f.changed(tell)
 	}
@@ -268,7 +259,8 @@ func (f *Frame) SetDuty(i int) {
 	}
 	f.status.acted(time.Now())
 	f.duty = i
-	f.clock = f.firstMotion()
+	f.clock, _ = f.span()
+	f.find(func(file *audit.File) instant { return busiest(file, i) })
 	f.changed(station.Selection | station.Clock | station.Reading)
 }
 

@@ -26,7 +26,7 @@ var (
 // tellEvery is how often progress is shown.
 const tellEvery = 100 * time.Millisecond
 
-// long is work on files that may take long: it is done on another goroutine, with progress
+// long is work that may take long, on files or for them: it is done on another goroutine, with progress
 // and Cancel in a box before the window, which stays alive.
 type long struct {
 	f     *Frame
@@ -39,20 +39,20 @@ type long struct {
 	share atomic.Pointer[told] // last told, shown or not
 }
 
-// told is how far a file is.
+// told is how far a file is, or without one the balance of the circuits.
 type told struct {
 	file        string
 	done, total int64
 }
 
-// perform does work and then goes on here. Until it has ended the menu and the keys wait.
-func (f *Frame) perform(title string, do func(ctx context.Context, tell document.Progress) error, then func(err error)) {
+// Perform does work and then goes on here. Until it has ended the menu and the keys wait.
+func (f *Frame) Perform(title string, do func(ctx context.Context, tell document.Progress) error, then func(err error)) {
 	ctx, stop := context.WithCancel(context.Background())
 	l := &long{f: f, title: title, stop: stop}
 	f.working = l
 	ended, result := make(chan struct{}), error(nil)
 	go func() {
-		result = do(ctx, l.tell)
+		result = station.Guarded(func() error { return do(ctx, l.tell) })
 		close(ended)
 	}()
 	finish := func() {
@@ -120,19 +120,28 @@ func (l *long) fill() {
 	if l.ended || l.box == nil || t == nil {
 		return
 	}
-	text := fmt.Sprintf("%s, %s of %s", t.file, station.FileSize(t.done), station.FileSize(t.total))
-	if t.done >= t.total {
-		text = t.file + " is read; what comes of it is worked out."
-	}
-	l.says.SetText(l.f.Local(text))
+	l.says.SetText(l.f.Local(t.text()))
 	if t.total > 0 {
 		l.bar.SetValue(float64(t.done) / float64(t.total))
 	}
 }
 
+// text says it.
+func (t told) text() string {
+	switch over := t.done >= t.total; {
+	case t.file == "" && over && t.total > 0:
+		return "The circuits are balanced; the pages are being drawn."
+	case t.file == "":
+		return "The circuits as they stand are being balanced first."
+	case over:
+		return t.file + " is read; what comes of it is worked out."
+	}
+	return fmt.Sprintf("%s, %s of %s", t.file, station.FileSize(t.done), station.FileSize(t.total))
+}
+
 // cancelled says so where an error is that, and what is there still.
 func (f *Frame) cancelled(err error, stays string) bool {
-	if !errors.Is(err, document.ErrCancelled) {
+	if !errors.Is(err, document.ErrCancelled) && !errors.Is(err, context.Canceled) {
 		return false
 	}
 	f.Say("Cancelled. " + stays)

@@ -34,7 +34,7 @@ func TestLongWorkIsShownAndCancelled(t *testing.T) {
 	for _, by := range []string{"button", "key"} {
 		var result error
 		over := false
-		b.perform("Opening press.yaml", func(ctx context.Context, tell document.Progress) error {
+		b.Perform("Opening press.yaml", func(ctx context.Context, tell document.Progress) error {
 			tell("press.csv", 120<<20, 300<<20)
 			<-ctx.Done()
 			return document.ErrCancelled

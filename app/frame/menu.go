@@ -175,7 +175,7 @@ func (f *Frame) undoOr(s fyne.Shortcut, said string, do func(context.Context, do
 		return
 	}
 	var name string
-	f.perform("Reading the recording again", func(ctx context.Context, tell document.Progress) error {
+	f.Perform("Reading the recording again", func(ctx context.Context, tell document.Progress) error {
 		var ok bool
 		if name, ok = do(ctx, tell); !ok && ctx.Err() != nil {
 			return document.ErrCancelled

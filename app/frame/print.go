@@ -4,17 +4,18 @@ import (
 	"context"
 	"fmt"
 	"io"
-	"os"
 	"path/filepath"
 	"strings"
 	"time"
 
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/dialog"
 
+	"barlitre/app/document"
 	"barlitre/app/station"
+	"barlitre/audit"
 	"barlitre/audit/figures"
 	"barlitre/audit/pdf"
+	"barlitre/audit/whole"
 	"barlitre/machines/units"
 )
 
@@ -26,7 +27,7 @@ func (f *Frame) printItems() *fyne.MenuItem {
 	m := fyne.NewMenuItem("Sheets as PDF", nil)
 	m.ChildMenu = fyne.NewMenu("")
 	for _, p := range pdf.Papers {
-		m.ChildMenu.Items = append(m.ChildMenu.Items, fyne.NewMenuItem(p.Name+" lying…", func() {
+		m.ChildMenu.Items = append(m.ChildMenu.Items, fyne.NewMenuItem(p.Name+" landscape…", func() {
 			if !f.asking() {
 				f.printSheets(p)
 			}
@@ -52,52 +53,37 @@ func (f *Frame) seen(on pdf.Paper) pdf.View {
 	return v
 }
 
-// printSheets asks for a name and writes the sheets there. Scripts may give a folder.
+// printSheets asks for a name and writes the sheets there.
 func (f *Frame) printSheets(on pdf.Paper) {
 	if len(f.doc.File().Circuits) == 0 {
 		f.Say("There is no circuit to print yet; draw one, or take one from File > New.")
 		return
 	}
 	name := strings.TrimSuffix(f.suggestedName(), ".yaml") + "-sheets.pdf"
-	if dir := os.Getenv(saveDirVariable); dir != "" {
-		f.writeSheets(filepath.Join(dir, name), on)
-		return
-	}
-	d := dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
-		if err != nil {
-			f.Fail(err)
-		} else if w != nil {
-			f.writeSheets(station.Chosen(w, ".pdf"), on)
-		}
-	}, f.win)
-	d.SetFileName(name)
-	f.showFiles(d, "Save the sheets as PDF", "Save")
+	f.PickPlace("Save the sheets as PDF", name, func(path string) { f.writeSheets(path, on) })
 }
 
-// writeSheets writes them in the background: what is drawn is what is seen now, with the
+// writeSheets writes them behind the window: what is drawn is what is seen now, with the
 // results of the audit as it stands; they are waited for.
 func (f *Frame) writeSheets(path string, on pdf.Paper) {
 	file, v, opt := f.doc.File(), f.seen(on), pdf.Options{System: f.settings.system, Date: today()}
-	if f.doc.Current() {
-		f.Say("Writing " + path + " …")
-	} else {
-		f.Say("Solving the last change, then writing " + path + " …")
-	}
-	go func() {
-		s, unsolved := f.doc.Settled(context.Background(), nil)
-		if unsolved == nil {
-			file = s.File
-		}
-		err := station.WriteWhole(path, func(w io.Writer) error { return pdf.WriteSheets(w, file, s, v, opt) })
-		post(func() {
-			switch {
-			case err != nil:
-				f.Fail(fmt.Errorf("print the sheets to %s: %w; nothing was written there, and the audit is still open here", path, err))
-			case unsolved != nil:
-				f.Say("Saved the sheets without results, for they are not solved: " + path)
-			default:
-				f.Say("Saved the sheets: " + path)
+	var unsolved error
+	f.Perform("Printing "+filepath.Base(path), func(ctx context.Context, tell document.Progress) error {
+		return station.WriteSettled(ctx, f.doc, path, tell, func(w io.Writer, s *audit.Solution, err error) error {
+			if unsolved = err; err == nil {
+				file = s.File
 			}
+			return pdf.WriteSheets(w, file, s, v, opt)
 		})
-	}()
+	}, func(err error) {
+		switch {
+		case f.cancelled(err, "Nothing was written, and the audit is still open here."):
+		case err != nil:
+			f.Fail(fmt.Errorf("print the sheets to %s: %w; nothing was written there, and the audit is still open here", path, whole.Plain(err)))
+		case unsolved != nil:
+			f.Say("Saved the sheets without results, for they are not solved: " + path)
+		default:
+			f.Say("Saved the sheets: " + path)
+		}
+	})
 }

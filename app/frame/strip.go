@@ -28,6 +28,7 @@ type strip struct {
 	plot    figures.Plot
 	asked   [][]valuesAt // by lane, what its series are of
 	area    figures.PlotArea
+	numbers []span // of the axis
 	content fyne.CanvasObject
 	own     bool // the picker is being set by the program
 }
@@ -159,14 +160,15 @@ type clockFigure struct {
 	line    *canvas.Rectangle
 	head    *canvas.Raster
 	flag    *canvas.Raster
-	pen     *pen.Raster // of the flag
-	text    string      // in it
-	wide    float64     // the room it takes at scale 1
+	cover   *canvas.Rectangle // behind the flag, over numbers that it hides in part
+	pen     *pen.Raster       // of the flag
+	text    string            // in it
+	wide    float64           // the room it takes at scale 1
 	pointer fyne.Position
 }
 
 func newClockFigure(s *strip) *clockFigure {
-	c := &clockFigure{s: s, line: canvas.NewRectangle(color.Transparent)}
+	c := &clockFigure{s: s, line: canvas.NewRectangle(color.Transparent), cover: canvas.NewRectangle(color.Transparent)}
 	c.Figure = widgets.NewFigure(fyne.NewSize(240, stripSlim), func(p pen.Pen, w, h float64) []widgets.Part {
 		s.draw(p, w, h)
 		if c.focus {
@@ -176,7 +178,7 @@ func newClockFigure(s *strip) *clockFigure {
 	})
 	c.head, c.flag = canvas.NewRaster(c.paintHead), canvas.NewRaster(c.paintFlag)
 	c.head.ScaleMode, c.flag.ScaleMode = canvas.ImageScalePixels, canvas.ImageScalePixels
-	c.Over = []fyne.CanvasObject{c.line, c.head, c.flag}
+	c.Over = []fyne.CanvasObject{c.cover, c.line, c.head, c.flag}
 	c.ExtendBaseWidget(c)
 	return c
 }

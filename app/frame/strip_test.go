@@ -6,6 +6,9 @@ import (
 	"strings"
 	"testing"
 
+	"fyne.io/fyne/v2"
+
+	"barlitre/app/widgets"
 	"barlitre/circuit/duty"
 )
 
@@ -56,5 +59,33 @@ circuits: []
 	b.until("the file", func() bool { return b.doc.Path() == path && b.duty == 1 })
 	if b.clock != 3 || b.strip.picker.Selected != "measured" {
 		t.Errorf("the clock stands at %g s of %s", b.clock, b.strip.picker.Selected)
+	}
+}
+
+// The values at the clock lie over the numbers of the axis: one that they would cut is hidden
+// whole, and its neighbours stay.
+func TestClockCutsNoNumber(t *testing.T) {
+	b := newBench(t)
+	b.Open("") // 40 s, numbers every 5 s
+	b.solved()
+	b.win.Resize(fyne.NewSize(1280, 800))
+	s := b.strip
+	if len(s.numbers) != 9 {
+		t.Fatalf("%d numbers on the axis of 40 s", len(s.numbers))
+	}
+	for at := 0.0; at <= 40; at += 0.1 {
+		b.SetClock(at)
+		k := widgets.Scale()
+		from, to := float64(s.figure.cover.Position().X/k), float64((s.figure.cover.Position().X+s.figure.cover.Size().Width)/k)
+		left, right := float64(s.figure.flag.Position().X/k), float64((s.figure.flag.Position().X+s.figure.flag.Size().Width)/k)
+		if from > left+0.01 || to < right-0.01 {
+			t.Errorf("at %g s the values stand out", at)
+		}
+		for i, n := range s.numbers {
+			cut, hidden := n.from < right && n.to > left, n.from > from-0.01 && n.to < to+0.01
+			if touched := n.from < to-0.01 && n.to > from+0.01; cut && !hidden || !cut && touched {
+				t.Errorf("at %g s number %d at %v: cut %v, hidden %v by %g to %g", at, i, n, cut, hidden, from, to)
+			}
+		}
 	}
 }

@@ -75,8 +75,13 @@ func (c *clockFigure) follow(read bool) {
 	}
 	// The values stand over the numbers of the axis: there they hide no phase and no track.
 	c.wide = pen.TextWidth(c.text, flagText, true) + 2*flagSide
-	c.flag.Move(at(max(stripPad+s.area.X, min(w-4-c.wide, x-c.wide/2)), foot))
+	left := max(stripPad+s.area.X, min(w-4-c.wide, x-c.wide/2))
+	c.flag.Move(at(left, foot))
 	c.flag.Resize(size(c.wide, flagHigh))
+	hides := s.covering(span{left, left + c.wide})
+	c.cover.FillColor = s.f.Palette().Card
+	c.cover.Move(at(hides.from, foot))
+	c.cover.Resize(size(hides.to-hides.from, flagHigh))
 	if read {
 		c.flag.Refresh()
 	}

@@ -43,15 +43,37 @@ func (s *strip) seen(h float64) (plot figures.Plot, more int, bare bool) {
 
 // lay finds where the tracks lie in a size.
 func (s *strip) lay(w, h float64) {
-	s.area = figures.PlotArea{}
+	s.area, s.numbers = figures.PlotArea{}, nil
 	if len(s.plot.Lanes) == 0 || w <= 0 || h <= 0 || s.plot.To <= s.plot.From {
 		return
 	}
+	p := pen.NewRecorder()
 	if plot, _, bare := s.seen(h); bare {
 		s.area = phasesArea(plot, w-20)
+		drawPhases(p, plot, w-20, h-4, s.f.Palette())
 	} else {
-		s.area = plot.Draw(figures.Measure{}, w-20, h-4, s.f.Palette())
+		s.area = plot.Draw(p, w-20, h-4, s.f.Palette())
 	}
+	for _, b := range p.Boxes() {
+		if b.Y+b.H > h-stripFoot && b.X > s.area.X-b.W {
+			s.numbers = append(s.numbers, span{stripPad + b.X, stripPad + b.X + b.W})
+		}
+	}
+}
+
+// span is a stretch across the strip.
+type span struct{ from, to float64 }
+
+// covering is a stretch, and all of the numbers of the axis that it lies on: one that is half
+// hidden reads as another.
+func (s *strip) covering(x span) span {
+	out := x
+	for _, n := range s.numbers {
+		if n.from < x.to && n.to > x.from {
+			out = span{min(out.from, n.from), max(out.to, n.to)}
+		}
+	}
+	return out
 }
 
 // drawTracks draws the lanes that are seen. What is not drawn is named, and stands at the

@@ -53,6 +53,9 @@ type trialSlider struct {
 	value  *widget.Label
 }
 
+// sliderValue is the least width of a value, so that the sliders are of one length.
+const sliderValue = 88
+
 func (c *curves) slider(name, title string, low, high, step float64) (*trialSlider, fyne.CanvasObject) {
 	s := &trialSlider{value: widget.NewLabel("")}
 	s.slider = widgets.Name(widgets.NewSlider(low, high, step, func(float64) {
@@ -61,7 +64,8 @@ func (c *curves) slider(name, title string, low, high, step float64) (*trialSlid
 		}
 	}), name)
 	s.value.Alignment = fyne.TextAlignTrailing
-	return s, widgets.Row(title, container.NewBorder(nil, nil, nil, s.value, s.slider), nil)
+	value := container.NewStack(container.New(widgets.Wide(sliderValue)), s.value)
+	return s, widgets.Row(title, container.NewBorder(nil, nil, nil, value, s.slider), nil)
 }
 
 func newCurves(ctx station.Context) *curves {
@@ -112,6 +116,8 @@ func (c *curves) load() {
 		return
 	case pending:
 		why = pendingText(c.ctx)
+	case waits(c.ctx, sol):
+		why = "How warm the oil gets stands here as soon as there is a result."
 	case why == "":
 		why = "How warm the oil gets stands here once the audit knows the tank: type the oil in the tank under Tank, cooler and air, at the right, and then the cooler if there is one."
 	}

@@ -220,7 +220,16 @@ func whyNoWarmth(ctx station.Context, s *audit.Solution) string {
 			}
 		}
 	}
+	if waits(ctx, s) {
+		return "The oil temperature, the cooler needed, the checks of hot day and faults, and the sheet to ask for a cooler stand here as soon as there is a result."
+	}
 	return "The oil temperature, the cooler needed, the checks of hot day and faults, and the sheet to ask for a cooler stand here once the audit knows the oil in the tank: type it under Tank, cooler and air, at the right."
+}
+
+// waits reports whether the audit knows its tank, and only a result is missing.
+func waits(ctx station.Context, s *audit.Solution) bool {
+	_, tank := ctx.Doc().File().Heat.Values["tank_volume"]
+	return s == nil && tank
 }
 
 // emptyText says what belongs here and how to get it.

@@ -44,6 +44,7 @@ func TestSlidersAndSheet(t *testing.T) {
 	dir := t.TempDir()
 	t.Setenv(station.SaveDirVariable, dir)
 	h.saveRequest()
+	h.writeRequest(filepath.Join(dir, "asked-cooler.csv"))
 	for _, ending := range []string{".pdf", ".csv"} {
 		found, _ := filepath.Glob(filepath.Join(dir, "*-cooler"+ending))
 		if len(found) != 1 {

@@ -3,6 +3,8 @@ package payback
 import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/layout"
+	"fyne.io/fyne/v2/theme"
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/fixfirst"
@@ -36,7 +38,8 @@ func newPages(ctx station.Context, saving fyne.CanvasObject, changed func(statio
 		s.all = append(s.all, p)
 		row.Add(p.button)
 	}
-	s.content = container.NewBorder(container.NewVBox(container.NewHScroll(row), widget.NewSeparator()), nil, nil, nil, s.stack)
+	inset := layout.NewCustomPaddedLayout(theme.Padding(), 0, 2*theme.Padding(), 2*theme.Padding())
+	s.content = container.NewBorder(container.NewVBox(container.New(inset, container.NewHScroll(row)), widget.NewSeparator()), nil, nil, nil, s.stack)
 	s.show(0)
 	return s
 }

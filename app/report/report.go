@@ -157,7 +157,7 @@ func (r *Report) Mend() bool { return false }
 func (r *Report) Help() string {
 	return "The pages are drawn as they will print. Leave sections out by their switches; the cautions and limits of use stay in. Title, customer, site and author " +
 		"belong to the audit and are saved with it.\n\n" +
-		"Circuit sheets adds each circuit on a lying page of its own, as it stands on its sheet at the clock, with a frame and a title block of fields of ISO 7200; what they say is typed here. " +
+		"Circuit sheets adds each circuit on a landscape page of its own, as it stands on its sheet at the clock, with a frame and a title block of fields of ISO 7200; what they say is typed here. " +
 		"File > Sheets as PDF prints the two circuits that are shown alone, on A4 or A3.\n\n" +
 		"Save PDF… writes the report, with the figures of all circuits as they are now. Save JSON… writes every result as numbers in SI units, for other programs. " +
 		"Save CSV… writes a table of every time step for each circuit and duty into a folder; for that the audit is solved once more, which can be cancelled.\n\n" +

@@ -5,14 +5,12 @@ import (
 	"errors"
 	"fmt"
 	"io"
-	"os"
 	"path/filepath"
 	"strings"
 	"time"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/dialog"
 	"fyne.io/fyne/v2/widget"
 
 	"barlitre/app/station"
@@ -119,30 +117,7 @@ func (s *saver) saveFile(what, ext string, write func(context.Context, io.Writer
 			return station.WriteWhole(path, func(w io.Writer) error { return write(ctx, w, r) })
 		})
 	}
-	if dir := os.Getenv(saveDirVariable); dir != "" {
-		do(filepath.Join(dir, s.base()+ext))
-		return
-	}
-	d := dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
-		switch {
-		case err != nil:
-			s.ctx.Fail(fmt.Errorf("save %s: %w; nothing was written, and the audit is still open here", what, err))
-		case w != nil:
-			do(station.Chosen(w, ext))
-		}
-	}, s.ctx.Window())
-	d.SetFileName(s.base() + ext)
-	s.ask(d)
-}
-
-func (s *saver) ask(d *dialog.FileDialog) {
-	if path := s.ctx.Doc().Path(); path != "" {
-		if at, err := folderURI(filepath.Dir(path)); err == nil {
-			d.SetLocation(at)
-		}
-	}
-	d.Resize(fyne.NewSize(760, 520))
-	d.Show()
+	s.ctx.PickPlace("Save "+what, s.base()+ext, do)
 }
 
 // work runs in the background with progress and a way to cancel, and says how it ended.

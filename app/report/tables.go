@@ -37,7 +37,14 @@ func (s *saver) saveCSV() {
 			s.askReplace(u.Path(), base, func() { do(u.Path()) })
 		}
 	}, s.ctx.Window())
-	s.ask(d)
+	if path := s.ctx.Doc().Path(); path != "" {
+		if at, err := folderURI(filepath.Dir(path)); err == nil {
+			d.SetLocation(at)
+		}
+	}
+	d.Resize(fyne.NewSize(760, 520))
+	d.Show()
+	s.ctx.Keep(d)
 }
 
 // askReplace asks before tables that are there already are replaced.
@@ -56,6 +63,7 @@ func (s *saver) askReplace(folder, base string, then func()) {
 	d.SetConfirmText("Replace")
 	d.SetDismissText("Keep")
 	d.Show()
+	s.ctx.Keep(d)
 }
 
 // existing lists the tables of an audit that are in a folder.

@@ -1,6 +1,7 @@
 package sheet
 
 import (
+	"context"
 	"math"
 	"slices"
 	"strings"
@@ -264,7 +265,13 @@ func (b *bench) field(key string) *numberRow {
 
 func close(a, b, eps float64) bool { return math.Abs(a-b) <= eps }
 
-// PickFile and SaveFirst are not asked for by sheets.
+// PickFile, PickPlace, Perform and SaveFirst are not asked for by sheets.
 func (b *bench) PickFile(_, _ string, _ []string, _ func(path string)) { b.t.Error("asked for a file") }
+
+func (b *bench) PickPlace(_, _ string, _ func(path string)) { b.t.Error("asked for a place") }
+
+func (b *bench) Perform(title string, _ func(context.Context, document.Progress) error, _ func(error)) {
+	b.t.Error("long work: " + title)
+}
 
 func (b *bench) SaveFirst(why string, _ func()) { b.t.Error("asked to save first: " + why) }

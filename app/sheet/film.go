@@ -2,25 +2,42 @@ package sheet
 
 import (
 	"image"
-	"time"
 
 	"barlitre/audit/pen"
 )
 
-// film draws a large sheet behind the window while the clock runs, so that the window can
-// paint the drawing before meanwhile. What is shown is behind the clock by a frame.
+// film draws a large sheet behind the window when the clock moves, so that the window can paint
+// the drawing before meanwhile. What is shown is behind the clock by a frame.
 type film struct {
-	pen    *pen.Mosaic
-	frames [2]*image.RGBA // by turns: one may be shown while the other is made
-	shown  *image.RGBA    // nil = the sheet is drawn as it is painted
-	made   chan finished  // not nil while one is being made, which comes out of it
-	again  bool           // the clock has moved on meanwhile
-	edits  int            // counts what makes a drawing under way useless
-	last   time.Time      // when the clock last moved
+	reel  *reel         // nil until a drawing is made
+	shown *image.RGBA   // nil = the sheet is drawn as it is painted
+	made  chan finished // not nil while one is being made, which comes out of it
+	again bool          // the clock has moved on meanwhile
+	edits int           // counts what makes a drawing under way useless
 }
 
-// pause is after how long the clock does not run any more: what was drawn by then may be old.
-const pause = 500 * time.Millisecond
+// reel is what drawings are made with and on, one at a time.
+type reel struct {
+	pen    *pen.Mosaic
+	frames [2]*image.RGBA // by turns: one may be shown while the other is made
+}
+
+// draw makes a drawing of a size in pixels while another is shown.
+func (r *reel) draw(p picture, w, h int, pixels float64, shown *image.RGBA) *image.RGBA {
+	if r.pen == nil || r.pen.Image().Rect.Dx() != w || r.pen.Image().Rect.Dy() != h {
+		r.pen = pen.NewMosaic(w, h)
+		r.frames = [2]*image.RGBA{image.NewRGBA(r.pen.Image().Rect), image.NewRGBA(r.pen.Image().Rect)}
+	}
+	to := r.frames[0]
+	if to == shown {
+		to = r.frames[1]
+	}
+	r.pen.Begin(p.opt.Palette.Card)
+	p.draw(r.pen, pixels)
+	r.pen.Flush()
+	copy(to.Pix, r.pen.Image().Pix)
+	return to
+}
 
 // finished is a drawing that was made.
 type finished struct {
@@ -49,41 +66,30 @@ func (f *film) stop() {
 // release gives its pictures up, unless one is being made.
 func (f *film) release() {
 	if f.stop(); f.made == nil {
-		f.pen, f.frames = nil, [2]*image.RGBA{}
+		f.reel = nil
 	}
 }
 
 // roll shows the drawing that is ready and begins that of the instant of the clock. It reports
-// false for a sheet that is drawn quickly, is not shown or painted yet or is being changed, and
-// for the first step of the clock after a pause.
+// false for a sheet that is drawn quickly, is not shown or painted yet or is being changed.
 func (e *editor) roll() bool {
-	f, now := &e.film, time.Now()
-	runs := now.Sub(f.last) < pause
-	if f.last = now; !runs || !e.s.sheetShown(e.index) || !large(e.drawn) || e.pen == nil || e.moved != nil || e.laying.bare != nil || e.sheet == nil || e.Size().Width <= 0 {
+	f := &e.film
+	if !e.s.sheetShown(e.index) || !large(e.drawn) || e.pen == nil || e.moved != nil || e.laying.bare != nil || e.sheet == nil || e.Size().Width <= 0 {
 		return false
 	}
 	e.takeFrame()
 	if f.again = f.made != nil; f.again {
 		return true
 	}
-	size := e.pen.Image().Rect
-	if f.pen == nil || f.pen.Image().Rect != size {
-		f.pen = pen.NewMosaic(size.Dx(), size.Dy())
-		f.frames = [2]*image.RGBA{image.NewRGBA(size), image.NewRGBA(size)}
-	}
-	to := f.frames[0]
-	if to == f.shown {
-		to = f.frames[1]
+	if f.reel == nil {
+		f.reel = &reel{}
 	}
 	made := make(chan finished, 1)
 	f.made = made
-	p, edits, m, pixels := e.picture(e.sheet, true).kept(), f.edits, f.pen, e.pixels(size.Dx())
+	size := e.pen.Image().Rect
+	p, edits, r, shown, pixels := e.picture(e.sheet, true).kept(), f.edits, f.reel, f.shown, e.pixels(size.Dx())
 	go func() {
-		m.Begin(p.opt.Palette.Card)
-		p.draw(m, pixels)
-		m.Flush()
-		copy(to.Pix, m.Image().Pix)
-		made <- finished{to, edits}
+		made <- finished{r.draw(p, size.Dx(), size.Dy(), pixels, shown), edits}
 		post(e.frameMade) // the clock may be at rest by then; while it runs, the next step takes it sooner
 	}()
 	return true

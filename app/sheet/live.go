@@ -223,6 +223,9 @@ func (l *live) draw(p pen.Pen, w, _ float64) []widgets.Part {
 	var parts []widgets.Part
 	column := 84.0
 	if len(rows[0].values) > 1 {
+		for _, name := range s.names() {
+			column = max(column, min(w/3, p.TextWidth(name, 11, false)+8))
+		}
 		for i, name := range s.names() {
 			p.Text(pen.Pt{X: w - column*float64(len(rows[0].values)-1-i), Y: 25}, pen.Shorten(name, 11, false, column-8), 11, pal.Secondary, pen.Right, false)
 		}

@@ -4,6 +4,8 @@
 package station
 
 import (
+	"context"
+
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/dialog"
 
@@ -112,6 +114,13 @@ type Context interface {
 
 	// PickFile asks for a file to read; endings are like ".csv".
 	PickFile(title, verb string, endings []string, then func(path string))
+	// PickPlace asks for the name of a file to save, name suggested; its ending is added to one
+	// without. What is there is replaced only by writing, which must be whole or not at all.
+	PickPlace(title, name string, then func(path string))
+	// Perform does what may take long behind the window, with progress and Cancel before it, and
+	// then goes on in the window. Progress is told in bytes of a file, or with no name as a share
+	// of balancing the circuits. Cancelled, the error that do returns is to be context.Canceled.
+	Perform(title string, do func(ctx context.Context, tell document.Progress) error, then func(err error))
 	// SaveFirst says why the audit needs a place, lets the user give it one, then goes on.
 	SaveFirst(why string, then func())
 	// Go shows a station by name, or a page of one that is Paged by "station/page".

@@ -91,8 +91,9 @@ const (
 	tableRow   = 24.0
 	tableLine  = 14.0 // of the head
 	tablePad   = 9.0
-	tableBar   = 9.0 // room of a scroll bar
-	tableLook  = 400 // rows that are measured for the widths
+	tableBar   = 9.0  // room of a scroll bar
+	tableWords = 96.0 // least width of a first column that gives way
+	tableLook  = 400  // rows that are measured for the widths
 )
 
 // NewTable makes an empty table with a least size.

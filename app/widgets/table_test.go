@@ -233,3 +233,27 @@ func TestColumnsHoldTheirTexts(t *testing.T) {
 		t.Errorf("the columns end at %g", end)
 	}
 }
+
+// In a table that is a little too wide the words of the first column give way, and every number
+// stays whole and in sight; one that is much too wide scrolls.
+func TestWordsGiveWayToNumbers(t *testing.T) {
+	table, win := tableOf(t, 3, 4, 600, 200)
+	table.SetData([]Column{{Name: "name", Left: true}, {Name: "a"}, {Name: "b"}}, 2, func(int) TableRow {
+		return TableRow{Cells: []string{"waiting, with the pump running", "0.0785 kW/K", "0.0208 kW/K"}}
+	})
+	need := table.widths[0] + table.widths[1] + table.widths[2] + tableBar
+	for _, c := range []struct {
+		less  float64
+		whole bool
+	}{{-10, true}, {1, true}, {table.widths[0] - tableWords, true}, {table.widths[0] - tableWords + 2, false}} {
+		win.Resize(fyne.NewSize(float32(need-c.less), 200))
+		win.Canvas().Capture()
+		end, numbers := table.x[3], table.x[3]-table.x[1]
+		if whole := end <= need-c.less+1e-3; whole != c.whole || numbers < table.widths[1]+table.widths[2]-1e-9 {
+			t.Errorf("%g too narrow: the columns end at %g of %g, numbers have %g", c.less, end, need-c.less, numbers)
+		}
+		if first := table.x[1]; c.less > 0 && (first < tableWords-1e-3 || first > table.widths[0]+1e-9) {
+			t.Errorf("%g too narrow: the words have %g", c.less, first)
+		}
+	}
+}

@@ -64,7 +64,8 @@ func (t *Table) view() (w, h float64) {
 }
 
 // lay places the columns: what is free is shared, but no column drifts far from the
-// next; what is then left goes to the first when it holds words.
+// next; what is then left goes to the first when it holds words. Of a table that is a
+// little too wide its words give way, so that all numbers can be read.
 func (t *Table) lay() {
 	w, _ := t.view()
 	if t.laidFor == w && len(t.x) == len(t.columns)+1 {
@@ -77,11 +78,15 @@ func (t *Table) lay() {
 	}
 	free := w - tableBar - sum
 	each, first := 0.0, 0.0
-	if free > 0 && len(t.columns) > 0 {
+	words := len(t.columns) > 1 && t.columns[0].Left
+	switch {
+	case free > 0 && len(t.columns) > 0:
 		each = math.Min(36, free/float64(len(t.columns)))
 		if t.columns[0].Left {
 			first = free - each*float64(len(t.columns))
 		}
+	case words && t.widths[0]+free >= tableWords:
+		first = free
 	}
 	t.x = []float64{0}
 	for c, x := range t.widths {

@@ -260,8 +260,8 @@ func (d *stepsDrawing) arrow(x0, x1, y float64, back bool) {
 }
 
 // label writes name and value where there is room: left of the bar (inside
-// first, for what is drawn from the supply), right of it, in it, or shortened
-// on the wider side.
+// first, for what is drawn from the supply), right of it, in it, the value in it
+// and the name beside, or shortened on the wider side.
 func (d *stepsDrawing) label(r stepLine, x0, x1, y float64, fill color.NRGBA) {
 	const gap = 6
 	bold, c := r.kind == KindWork, d.pal.Ink
@@ -287,6 +287,12 @@ func (d *stepsDrawing) label(r stepLine, x0, x1, y float64, fill color.NRGBA) {
 	case inside >= need && fill.A == 255:
 		at, c = x0+gap, d.pal.On(fill)
 		lead = 0 // the bar itself shows that it is heat; no disc on its own colour
+	case fill.A == 255 && inside >= d.p.TextWidth(value, textSize, bold) && max(left, right) >= need-d.p.TextWidth(" "+value, textSize, bold):
+		d.p.Text(pen.Pt{X: x0 + gap, Y: y + stepBar/2 + capHalf*textSize}, value, textSize, d.pal.On(fill), pen.Left, bold)
+		full, need = pen.Clean(r.label), need-d.p.TextWidth(" "+value, textSize, bold)
+		if at = x1 + gap; left >= need {
+			at = x0 - gap - need
+		}
 	default:
 		full, need = d.short(r.label, value, max(left, right)-lead, bold)
 		if at = x1 + gap; left > right {

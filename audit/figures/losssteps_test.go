@@ -173,3 +173,31 @@ func TestHostileSteps(t *testing.T) {
 		}
 	}
 }
+
+// Where neither side nor the bar has room for all of a label, the value stands in the bar and the
+// name beside it: the largest loss keeps its name.
+func TestLargeStepKeepsItsName(t *testing.T) {
+	f := LossSteps{Unit: "kJ", Circuits: []StepsCircuit{{Title: "x", Supply: 400, WorkPositive: 70,
+		Steps: []Step{{"first", 115, true}, {"V1: metering P-A", 120, true}, {"last", 95, true}}}}}
+	const w, h = 280, 300
+	rec := pen.NewRecorder()
+	f.Draw(rec, w, h, Light)
+	checkLabels(t, "parted", rec, w, h)
+	var name, value *pen.Box
+	for i, b := range rec.Boxes() {
+		switch b.Text {
+		case "V1: metering P-A":
+			name = &rec.Boxes()[i]
+		case "120 kJ":
+			value = &rec.Boxes()[i]
+		}
+	}
+	if name == nil || value == nil || name.Overlaps(*value, 0) {
+		t.Fatalf("name %v, value %v in\n%s", name, value, rec)
+	}
+	for _, s := range rec.Shapes() {
+		if lo, hi := s.Bounds(); s.Fill == Light.Heat && hi.X-lo.X > 50 && value.Y > lo.Y-2 && value.Y < hi.Y && !value.Inside(lo.X, lo.Y, hi.X-lo.X, hi.Y-lo.Y, 2) {
+			t.Errorf("the value at %v is not in its bar %v to %v", *value, lo, hi)
+		}
+	}
+}

@@ -3,6 +3,9 @@
 package stationtest
 
 import (
+	"context"
+	"os"
+	"path/filepath"
 	"slices"
 	"strings"
 	"testing"
@@ -39,6 +42,7 @@ type Context struct {
 	Kept       []dialog.Dialog
 	PickedFile string // the file that the user picks, "" = none
 	SaveTo     string // where the user saves
+	Cancelling bool   // the user cancels what takes long
 }
 
 // New opens a sample, "" for the empty audit, and waits until it is solved.
@@ -137,6 +141,23 @@ func (c *Context) PickFile(_, _ string, _ []string, then func(path string)) {
 	if c.PickedFile != "" {
 		then(c.PickedFile)
 	}
+}
+
+// PickPlace takes the name suggested, in the folder for scripts.
+func (c *Context) PickPlace(_, name string, then func(path string)) {
+	if dir := os.Getenv(station.SaveDirVariable); dir != "" {
+		then(filepath.Join(dir, name))
+	}
+}
+
+// Perform does it at once; with Cancelling it is cancelled before it begins.
+func (c *Context) Perform(_ string, do func(context.Context, document.Progress) error, then func(error)) {
+	ctx, stop := context.WithCancel(context.Background())
+	defer stop()
+	if c.Cancelling {
+		stop()
+	}
+	then(do(ctx, func(string, int64, int64) {}))
 }
 
 // SaveFirst saves to SaveTo.
