@@ -40,11 +40,15 @@ func (d *Duty) speedColumn(of string) *column {
 }
 
 func (c *column) top() float64 {
-	m := 0.0
-	if c != nil {
+	if c == nil {
+		return 0
+	}
+	m, ok := recall(c.v, largest)
+	if !ok {
 		for _, v := range c.v {
 			m = math.Max(m, math.Abs(v))
 		}
+		keep(c.v, largest, m)
 	}
 	return m
 }

@@ -212,34 +212,36 @@ func (d *Duty) Check() []Problem {
 	} else if d.Cycle() <= 0 {
 		bad("", "lasts %g s; the last time stamp must come after the first", d.Cycle())
 	}
-	for i, t := range d.Time {
-		if math.IsNaN(t) || math.IsInf(t, 0) {
-			bad("", "time stamp %d is not a number", i+1)
-		} else if i > 0 && t < d.Time[i-1] {
-			bad("", "time runs backwards from %g s to %g s (row %d); sort the rows", d.Time[i-1], t, i+1)
-		} else if i > 1 && t == d.Time[i-1] && t == d.Time[i-2] {
-			bad("", "three rows at %g s; a step is two rows at one time", t)
+	sound := func(column []float64, what fact, look func()) {
+		if _, ok := recall(column, what); ok {
+			return
+		}
+		before := len(out)
+		if look(); len(out) == before {
+			keep(column, what, 1)
 		}
 	}
+	sound(d.Time, inOrder, func() {
+		for i, t := range d.Time {
+			if math.IsNaN(t) || math.IsInf(t, 0) {
+				bad("", "time stamp %d is not a number", i+1)
+			} else if i > 0 && t < d.Time[i-1] {
+				bad("", "time runs backwards from %g s to %g s (row %d); sort the rows", d.Time[i-1], t, i+1)
+			} else if i > 1 && t == d.Time[i-1] && t == d.Time[i-2] {
+				bad("", "three rows at %g s; a step is two rows at one time", t)
+			}
+		}
+	})
 	for _, tr := range d.Tracks {
 		name := tr.Of + "." + tr.What.String()
 		if len(tr.Values) != len(d.Time) {
 			bad(name, "has %d values for %d time stamps; give one a time stamp", len(tr.Values), len(d.Time))
 		}
-		for i, v := range tr.Values {
-			if math.IsNaN(v) || math.IsInf(v, 0) {
-				bad(name, "value %d is not a number", i+1)
-				break
+		sound(tr.Values, tr.What.bounded(), func() {
+			if i, text := tr.fault(); text != "" {
+				bad(name, "value %d %s", i+1, text)
 			}
-			if tr.What == Command && math.Abs(v) > 1+1e-9 {
-				bad(name, "value %d is %g; a command lies between -1 and 1", i+1, v)
-				break
-			}
-			if (tr.What == SetPressure || tr.What == SetFlow) && v < 0 {
-				bad(name, "value %d is below 0; a set pressure or set flow starts at 0", i+1)
-				break
-			}
-		}
+		})
 	}
 	for _, tr := range d.Tracks {
 		if tr.What == Position && d.Track(tr.Of, Speed) != nil {
@@ -247,4 +249,31 @@ func (d *Duty) Check() []Problem {
 		}
 	}
 	return out
+}
+
+// bounded is what the values of a track must be.
+func (w What) bounded() fact {
+	switch w {
+	case Command:
+		return asCommand
+	case SetPressure, SetFlow:
+		return notBelowZero
+	}
+	return finite
+}
+
+// fault finds the first value of a track that it must not have, and says what is wrong with it.
+func (tr *Track) fault() (row int, text string) {
+	bounds := tr.What.bounded()
+	for i, v := range tr.Values {
+		switch {
+		case math.IsNaN(v) || math.IsInf(v, 0):
+			return i, "is not a number"
+		case bounds == asCommand && math.Abs(v) > 1+1e-9:
+			return i, fmt.Sprintf("is %g; a command lies between -1 and 1", v)
+		case bounds == notBelowZero && v < 0:
+			return i, "is below 0; a set pressure or set flow starts at 0"
+		}
+	}
+	return 0, ""
 }
