@@ -224,7 +224,7 @@ func (d *Duty) Check() []Problem {
 	for _, tr := range d.Tracks {
 		name := tr.Of + "." + tr.What.String()
 		if len(tr.Values) != len(d.Time) {
-			bad(name, "has %d values for %d time stamps; give one a time stamp", len(tr.Values), len(d.Time))
+			bad(name, "has %s for %s; each value needs a time stamp", counted(len(tr.Values), "value"), counted(len(d.Time), "time stamp"))
 		}
 		for i, v := range tr.Values {
 			if math.IsNaN(v) || math.IsInf(v, 0) {
@@ -247,4 +247,11 @@ func (d *Duty) Check() []Problem {
 		}
 	}
 	return out
+}
+
+func counted(n int, one string) string {
+	if n == 1 {
+		return "1 " + one
+	}
+	return fmt.Sprintf("%d %ss", n, one)
 }
