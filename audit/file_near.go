@@ -2,6 +2,7 @@ package audit
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"barlitre/circuit"
@@ -21,6 +22,11 @@ func nearest(word string, known []string) string {
 
 // calledSo returns the known word whose title was written in its place, or is nearest to what was, or "".
 func calledSo(word string, known []string, title func(string) string) string {
+	for _, w := range strings.Fields(strings.ToLower(word)) { // "hydraulic cylinder" is a cylinder
+		if slices.Contains(known, w) && title(w) != "" {
+			return w
+		}
+	}
 	var called []string
 	of := map[string]string{}
 	for _, k := range known {

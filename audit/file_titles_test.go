@@ -113,6 +113,7 @@ func TestSectionsRefusedByTitle(t *testing.T) {
 func TestTitleWrittenForKey(t *testing.T) {
 	for _, c := range [][3]string{
 		{"crack: 160 bar", "cracks at: 160 bar", "did you mean cracks at (crack)?"},
+		{"kind: cylinder", "kind: hydraulic cylinder", "did you mean cylinder, differential (cylinder)?"},
 		{"kind: relief", "kind: relief valve", "did you mean relief valve (relief)?"},
 		{"pump_at_rest: keep", "pump_at_rest: switched off", "did you mean switched off (stop)?"},
 		{"crack: 160 bar", "xyzzy: 160 bar", "unknown key for this kind of block, relief valve (relief); `barlitre blocks relief` lists its keys"},
