@@ -67,18 +67,18 @@ func TestCalendarGivesHours(t *testing.T) {
 // Each fault of a calendar is told by its line.
 func TestCalendarRefused(t *testing.T) {
 	for _, x := range []struct{ old, new, where, says string }{
-		{"breaks: [30 min]", "breaks: [9 h]", "breaks: [9 h]", "calendar.shift 1: its breaks last 9 h, the shift only 8 h"},
+		{"breaks: [30 min]", "breaks: [9 h]", "breaks: [9 h]", "calendar, shift 1: its breaks last 9 h, the shift only 8 h"},
 		{"from: 14:00", "from: 13:00", "shifts:", "overlaps with the shift early on Mon at 13:00"},
 		{"from: 06:00", "from: six", "six", `"six" is no time of day`},
 		{"Mon-Thu", "Mon-Thx", "Mon-Thx", "are no days"},
-		{"weeks: 48", "weeks: 60", "weeks", "calendar.weeks: is 60; a year has 52.14"},
+		{"weeks: 48", "weeks: 60", "weeks", "calendar, weeks a year (weeks): is 60; a year has 52.14"},
 		{"maintenance: 20 h", "maintenance: 2 kg", "maintenance", "is not a unit of time"},
 		{"idle_time: 10 %", "idle_time: 110 %", "idle_time", "is no share"},
 		{"waiting: 100 %", "waitin: 100 %", "waitin:", `there is no duty "waitin"; did you mean "waiting"?`},
 		{"waiting: 100 %", "product A: 100 %", "idle: {", `duty "product A" stands for work already`},
-		{"- name: product B\n", "- name: product B\n  hours: 20 h\n", "hours: 20", `duty "product B", hours: stand here, and the calendar gives the duty its hours too (work, in line`},
+		{"- name: product B\n", "- name: product B\n  hours: 20 h\n", "hours: 20", `duty "product B", hours a year (hours): stand here, and the calendar gives the duty its hours too (work, in line`},
 		{"  idle: {waiting: 100 %}\n", "", "shifts:", "idle takes 322 h a year and has no duty"},
-		{"  weeks", "  week", "week:", `unknown key; did you mean "weeks"?`},
+		{"  weeks", "  week", "week:", `unknown key; did you mean weeks a year (weeks)?`},
 		{"stops: {maintenance: 20 h}", "stops: {rebuild: 4000 h}", "shifts:", "planned stops take 4000 h, the shifts work only 3240 h"},
 		{"work: {product A: 60 %", "work: {product A: sixty", "sixty", "neither a share nor hours"},
 	} {

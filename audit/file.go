@@ -276,6 +276,8 @@ type File struct {
 	used   map[string]bool      // which of them this text needs
 	how    Importing
 	found  []circuit.Finding
+
+	unreadAxes []string // that the file has, but of a kind that could not be read
 }
 
 // Site says whose machine it is, for the report.
@@ -345,6 +347,8 @@ type CircuitEntry struct {
 
 	Standby    float64 // W, drawn by its electric supply while the machine is off, in place of that of the calendar
 	HasStandby bool
+
+	unreadLine bool // it has lines that could not be read
 }
 
 // Circuit returns a circuit by name, or nil.

@@ -1,6 +1,7 @@
 package audit
 
 import (
+	"errors"
 	"fmt"
 	"slices"
 	"strconv"
@@ -27,7 +28,7 @@ func (f *File) AddBlock(circuitName, kindName string, at [2]float64, id string) 
 	}
 	kind := circuit.KindNamed(kindName)
 	if kind == nil {
-		return "", fmt.Errorf("there is no kind of block %q%s", kindName, guess(kindName, kindNames()))
+		return "", errors.New(noKind(kindName))
 	}
 	if id == "" {
 		id = f.freeID(e, kind, nil)

@@ -32,13 +32,13 @@ func (r *reader) calendar(n *yaml.Node) {
 	if isNull(n) {
 		return
 	}
-	s := scope{where: "calendar"}
+	s := scope{where: "calendar"}.titled("calendar")
 	before := stops(r.found)
 	known := append([]string{"shifts", "stops"}, calendarKeys...)
 	for _, st := range calendar.Busy {
 		known = append(known, string(st))
 	}
-	f := r.fields(scope{}, n, "calendar", known...)
+	f := r.fields(s, n, "", known...)
 	c := &Calendar{Plan: calendar.Plan{Weeks: calendar.MostWeeks, Uses: map[calendar.State][]calendar.Use{}}}
 	r.file.Calendar = c
 	for i, item := range r.items(s, f["shifts"].value, "shifts", "shifts: [{name: early, from: 06:00, to: 14:00, days: Mon-Fri}]") {
@@ -208,7 +208,7 @@ func (r *reader) uses(s scope, f map[string]entry, c *Calendar) {
 				continue
 			}
 			if h := child(item(child(r.file.root, "duties"), i), "hours"); !isNull(h) {
-				r.bad(scope{duty: name, where: fmt.Sprintf("duty %q", name)}, h, "hours",
+				r.bad(scope{duty: name, where: fmt.Sprintf("duty %q", name)}.titled("duty"), h, "hours",
 					"stand here, and the calendar gives the duty its hours too (%s, in line %d); take one of the two out", state, e.at.Line)
 			}
 			c.Uses[state] = append(c.Uses[state], calendar.Use{Duty: name, Amount: r.amount(in, e, e.key)})

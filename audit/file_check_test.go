@@ -24,13 +24,13 @@ func TestCheckFile(t *testing.T) {
 		{"C1.A - RV1.P", "C1.A - RV9.P", 16, "", "", "no block RV9", false},
 		{"C1.A - RV1.P", "C1.X - RV1.P", 16, "C1", "", "the ports A and B", false},
 		{"bore: 80 mm, ", "", 14, "C1", "bore", "missing", true},
-		{"axis: ram", "axis: arm", 14, "C1", "axis", `no axis "arm"`, true},
+		{"axis: ram", "axis: arm", 14, "C1", "axis", `axis is "arm", but there is no axis of that name; the only one is ram`, true},
 		{"hold: valve", "hold: vavle", 14, "C1", "hold", `"vavle"`, true},
 		{"crack: 160 bar", "crack: 1600 bar", 13, "RV1", "crack", "at most", true},
 		{"bore: 80 mm", "bore: 80", 14, "C1", "bore", "has no unit", true},
-		{"kind: cylinder", "kind: cilinder", 14, "C1", "kind", `did you mean "cylinder"?`, true},
+		{"kind: cylinder", "kind: cilinder", 14, "C1", "kind", `did you mean cylinder, differential (cylinder)?`, true},
 		{"crack: 160 bar", "crack: {value: 160 bar, low: 170}", 13, "RV1", "crack", "between its low and high", true},
-		{"pump_at_rest: keep", "pump_at_rest: kepp", 11, "", "pump_at_rest", `did you mean "keep"?`, true},
+		{"pump_at_rest: keep", "pump_at_rest: kepp", 11, "", "pump_at_rest", `did you mean keep turning (keep)?`, true},
 	} {
 		text := strings.Replace(string(data), c.old, c.new, 1)
 		f, _ := Parse([]byte(text), nil, "")

@@ -49,7 +49,7 @@ func (r *reader) circuits(n, root *yaml.Node) {
 }
 
 func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
-	s := scope{circuit: name, where: fmt.Sprintf("circuit %q", name)}
+	s := scope{circuit: name, where: fmt.Sprintf("circuit %q", name)}.titled("circuit")
 	f := r.fields(s, n, "", "name", "role", "note", "pump_at_rest", "standby", "retrofit_cost", "blocks", "lines", "notes", "groups", "bends", "heat")
 	if _, ok := f["name"]; !ok {
 		r.bad(s, n, "name", "is missing")
@@ -63,7 +63,7 @@ func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 		c.Role = Role(role)
 	}
 	c.Note = r.text(s, f, "note")
-	c.PumpAtRest = circuit.AtRest(r.word(s, f, "pump_at_rest", string(circuit.Keep), string(circuit.Unload), string(circuit.Stop)))
+	c.PumpAtRest = circuit.AtRest(r.wordCalled(s, f, "pump_at_rest", func(w string) string { return circuit.AtRest(w).Name() }, string(circuit.Keep), string(circuit.Unload), string(circuit.Stop)))
 	if v, ok := r.optional(s, f, "standby", units.Power); ok {
 		if c.Standby, c.HasStandby = v.SI, true; v.SI < 0 {
 			r.bad(s, f["standby"].value, "standby", "is %s, must not be below 0", v.Text)
@@ -83,6 +83,8 @@ func (r *reader) circuit(name string, index int, n *yaml.Node) CircuitEntry {
 	for _, item := range r.items(s, f["lines"].value, "lines", "lines: [P1.P - V1.P]") {
 		if l, ok := r.line(s, item); ok {
 			c.Lines = append(c.Lines, l)
+		} else {
+			c.unreadLine = true
 		}
 	}
 	c.Heat = r.heat(s, f["heat"].value)
@@ -160,6 +162,7 @@ var placing = []string{"kind", "at", "turn", "mirror"}
 
 func (r *reader) block(s scope, e entry) (circuit.Block, bool) {
 	s.block, s.where = e.key, e.key
+	s = s.titled("block")
 	b := circuit.Block{ID: e.key, Line: e.at.Line, Values: map[string]circuit.Value{}, Words: map[string]circuit.Word{}}
 	if !r.id(s, e.at, "block") {
 		return b, false
@@ -170,7 +173,7 @@ func (r *reader) block(s scope, e entry) (circuit.Block, bool) {
 	}
 	kn := child(e.value, "kind")
 	if kn == nil {
-		r.bad(s, e.at, "kind", "is missing; known kinds: %s", strings.Join(kindNames(), ", "))
+		r.bad(s, e.at, "kind", "is missing; write what the block is, such as kind: cylinder; `barlitre blocks` lists the kinds")
 		return b, false
 	}
 	name, ok := r.scalar(s, kn, "kind", "a kind of block")
@@ -180,11 +183,25 @@ func (r *reader) block(s scope, e entry) (circuit.Block, bool) {
 	b.Kind = name
 	kind := circuit.KindNamed(name)
 	if kind == nil {
-		r.bad(s, kn, "kind", "there is no kind %q%s", name, guess(name, kindNames()))
+		r.bad(s, kn, "kind", "%s", noKind(name))
 		return b, true
 	}
-	r.params(s, &b, kind, e.value)
+	r.params(s.ofKind(kind), &b, kind, e.value)
 	return b, true
+}
+
+// noKind says that a kind of block is not known, and which one was likely meant.
+func noKind(name string) string {
+	title := func(name string) string {
+		if k := circuit.KindNamed(name); k != nil {
+			return k.Title
+		}
+		return ""
+	}
+	if known := kindNames(); nearest(name, known) != "" || calledSo(name, known, title) != "" {
+		return fmt.Sprintf("there is no kind %q%s", name, guessOf(name, known, title))
+	}
+	return fmt.Sprintf("there is no kind %q; `barlitre blocks` lists the kinds", name)
 }
 
 func kindNames() []string {
@@ -214,7 +231,7 @@ func (r *reader) params(s scope, b *circuit.Block, kind *circuit.Kind, n *yaml.N
 				b.Values[e.key] = v
 			}
 		default:
-			if t, ok := r.scalar(s, e.value, e.key, "a word"); ok {
+			if t, ok := r.scalar(s, e.value, e.key, p.Takes()); ok {
 				b.Words[e.key] = circuit.Word{Text: choice(p, t), Line: e.value.Line}
 			}
 		}
@@ -244,7 +261,11 @@ func (r *reader) unknownParam(s scope, e entry, n *yaml.Node, kind *circuit.Kind
 		r.unknownKey(s, e, n, known)
 		return
 	}
-	r.bad(s, e.at, e.key, "%s has no such parameter%s", kind.Name, guess(e.key, known))
+	which := s.guess(e.key, known)
+	if !strings.Contains(which, "did you mean") {
+		which = fmt.Sprintf("; `barlitre blocks %s` lists its keys", kind.Name)
+	}
+	r.bad(s, e.at, e.key, "unknown key for this kind of block, %s%s", circuit.WithWord(kind.Title, kind.Name), which)
 }
 
 // at reads the place of a block on the sheet.
@@ -285,7 +306,11 @@ func (r *reader) line(s scope, n *yaml.Node) (circuit.Line, bool) {
 	for _, part := range strings.Split(t, "-") {
 		m := portText.FindStringSubmatch(strings.TrimSpace(part))
 		if m == nil {
-			r.bad(s, n, "", "%q is not a port in %q; write block.port - block.port", strings.TrimSpace(part), oneLine(t))
+			where := ""
+			if whole := oneLine(t); whole != strings.TrimSpace(part) {
+				where = fmt.Sprintf(" in %q", whole)
+			}
+			r.bad(s, n, "", "%q is not a port%s; write block.port - block.port", strings.TrimSpace(part), where)
 			return l, false
 		}
 		l.Ports = append(l.Ports, circuit.PortRef{Block: m[1], Port: m[2]})

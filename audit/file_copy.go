@@ -129,7 +129,7 @@ func (f *File) Paste(circuitName, text string, shift [2]float64) (map[string]str
 	for _, b := range p.Blocks {
 		kind := circuit.KindNamed(b.Kind)
 		if kind == nil {
-			return nil, fmt.Errorf("the clipboard, %s: there is no kind %q%s", b.ID, b.Kind, guess(b.Kind, kindNames()))
+			return nil, fmt.Errorf("the clipboard, %s: %s", b.ID, noKind(b.Kind))
 		}
 		id := b.ID
 		if f.mayBeCalled(e, id) != nil || taken[id] || f.hasTrackOf(id) {

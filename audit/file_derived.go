@@ -77,7 +77,7 @@ func (v *derivation) track() channels.Track {
 	}
 	want := map[string][]units.Dim{logged.OfPosition: {units.Velocity, units.AngularSpeed}, logged.OfFlow: {units.Velocity, units.AngularSpeed}, logged.Chambers: {units.Force}, logged.OfMotor: {units.Torque}, logged.Turned: {v.dim}, logged.OfPower: {units.Force, units.Torque}}[law]
 	if v.dim != want[0] && v.dim != want[len(want)-1] {
-		v.bad(v.s, v.at, "law", "%q gives a %s, this track is a %s", law, want[0].Name(), v.dim.Name())
+		v.bad(v.s, v.at, "law", "%q gives %s, this track is %s", law, article(want[0].Name()), article(v.dim.Name()))
 		return channels.Track{}
 	}
 	switch law {
@@ -132,7 +132,7 @@ func (v *derivation) number(key string, d units.Dim, fallback float64, needed bo
 	x, ok := v.optional(v.s, v.f, key, d)
 	switch _, given := v.f[key]; {
 	case !given && needed:
-		v.bad(v.s, v.at, key, "is missing; write a %s", d.Name())
+		v.bad(v.s, v.at, key, "is missing; write %s", article(d.Name()))
 		v.ok = false
 	case !given:
 		return fallback

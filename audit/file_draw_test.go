@@ -109,7 +109,7 @@ func TestAddBlock(t *testing.T) {
 		t.Errorf("the second valve follows %q; the first is commanded", a)
 	}
 	for _, c := range [][3]string{
-		{"As found", "relif", `did you mean "relief"?`}, {"As", "relief", `there is no circuit "As"`}, {"As found", "relief", "has a block V1 already"},
+		{"As found", "relif", `did you mean relief valve (relief)?`}, {"As", "relief", `there is no circuit "As"`}, {"As found", "relief", "has a block V1 already"},
 	} {
 		before := f.Bytes()
 		if _, err := f.AddBlock(c[0], c[1], [2]float64{}, "V1"); err == nil || !strings.Contains(err.Error(), c[2]) || !bytes.Equal(before, f.Bytes()) {

@@ -63,7 +63,7 @@ func nameOf(item *yaml.Node) (string, *yaml.Node) {
 }
 
 func (r *reader) duty(name string, n *yaml.Node) (*duty.Duty, Source) {
-	s := scope{duty: name, where: fmt.Sprintf("duty %q", name)}
+	s := scope{duty: name, where: fmt.Sprintf("duty %q", name)}.titled("duty")
 	f := r.fields(s, n, "", "name", "note", "hours", "repeats", "step", "instants", "standstill", "points", "file", "columns", "sha256", "import", "also", "derived", "part", "phases")
 	d := &duty.Duty{Name: name}
 	if _, ok := f["name"]; !ok {
@@ -239,7 +239,7 @@ func (r *reader) list(s scope, e entry, unit string, d units.Dim) []float64 {
 	}
 	for i, item := range r.items(s, e.value, e.key, "[0 s, 2 s]") {
 		key := fmt.Sprintf("%s, value %d", e.key, i+1)
-		t, ok := r.scalar(s, item, key, "a "+d.Name())
+		t, ok := r.scalar(s, item, key, article(d.Name()))
 		if !ok {
 			out = append(out, 0)
 			continue
@@ -296,11 +296,11 @@ func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units
 	}
 	if k, ok := r.axisKind(of); ok {
 		if !w.OfAxis() {
-			use := "a pump with control: pq"
+			use := "a pump with p/Q control (control: pq)"
 			if w.Measured() {
 				use = "a measuring point"
 			}
-			r.bad(s, n, name, "%s is an axis; %s is for %s", of, what, use)
+			r.bad(s, n, name, "%s is an axis; %s is for %s", of, said(what), use)
 			return 0, false
 		}
 		return w.Dim(k), true
@@ -310,12 +310,15 @@ func (r *reader) column(s scope, d *duty.Duty, n *yaml.Node, name string) (units
 	case r.blocks[of] && w.OfBlock():
 		return w.Dim(duty.Linear), true
 	case r.blocks[of]:
-		r.bad(s, n, name, "%s is a block; a block has a command, a set_pressure or a set_flow, a measuring point a pressure or a flow, an electric motor a power; %s is for an axis", of, what)
+		r.bad(s, n, name, "%s is a block; a block has a command, a set pressure (set_pressure) or a set flow (set_flow), a measuring point a pressure or a flow, an electric motor a power; %s is for an axis", of, said(what))
 	default:
 		r.bad(s, n, name, "there is no axis or block %q%s", of, guess(of, r.axisNamesKnown()))
 	}
 	return 0, false
 }
+
+// said names what a track gives, with its word where that is not the same.
+func said(what string) string { return circuit.WithWord(strings.ReplaceAll(what, "_", " "), what) }
 
 func (r *reader) axisNamesKnown() []string {
 	var out []string

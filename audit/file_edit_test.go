@@ -156,7 +156,7 @@ func TestSetRefuses(t *testing.T) {
 		{"RV1.crack", "160", "has no unit"},
 		{"RV1.crack", "160,5 bar", "use a decimal point"},
 		{"RV1.crack", " ", "the value is empty"},
-		{"RV1.crck", "160 bar", `relief has no parameter "crck"; did you mean "crack"?`},
+		{"RV1.crck", "160 bar", `relief valve (relief) has no parameter "crck"; did you mean cracks at (crack)?`},
 		{"RV1", "160 bar", "write block.parameter"},
 		{"RV1.kind", "tank", `no parameter "kind"`},
 		{"RV9.crack", "160 bar", `no circuit has a block "RV9"`},
@@ -173,7 +173,7 @@ func TestSetRefuses(t *testing.T) {
 		{"energy.tax", "1", "energy has price, co2"},
 		{"oil.grade", "ISO VG 47", "ISO VG 47 is not in the list"},
 		{"As found/hold", "x", "besides blocks it has role, note, pump_at_rest"},
-		{"As found/pump_at_rest", "sleep", "keep, unload, stop"},
+		{"As found/pump_at_rest", "sleep", "keep turning (keep), turn unloaded (unload), switched off (stop)"},
 	} {
 		f := full(t)
 		before := f.Bytes()

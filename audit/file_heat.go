@@ -18,11 +18,9 @@ func (r *reader) heat(outer scope, n *yaml.Node) HeatSection {
 		return h
 	}
 	s := outer.in("heat")
-	if outer.where == "" {
-		s = scope{where: "heat"}
-	}
+	s.title = heatTitle
 	before := len(r.found)
-	f := r.fields(outer, n, "heat", heatKeyNames()...)
+	f := r.fields(s, n, "", heatKeyNames()...)
 	h.Given = len(f) > 0
 	for _, k := range HeatKeys {
 		e, ok := f[k.Key]

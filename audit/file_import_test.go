@@ -132,7 +132,7 @@ func TestImportedDuty(t *testing.T) {
 	}
 	near(t, "work at the load", r.Balance.WorkPositive().Total()+r.Balance.WorkNegative().Total(), work, 2e-3, 0)
 	im := f.Imports[0]
-	if len(im.Derived) != 2 || !strings.Contains(im.Derived[1].Formula+im.Derived[0].Formula, "− 800 N·sgn v") {
+	if len(im.Derived) != 2 || !strings.Contains(im.Derived[1].Formula+im.Derived[0].Formula, "− 800\u202fN·sgn v") {
 		t.Errorf("%+v", im.Derived)
 	}
 	var lines []string

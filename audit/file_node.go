@@ -27,27 +27,29 @@ type reader struct {
 // scope says where in the file something stands, for findings.
 type scope struct {
 	circuit, duty, block string
-	where                string // begins the text: "oil", "RV1"
-	param                string // the parameter that all keys further in belong to
+	where                string                  // begins the text: "oil", "RV1"
+	param                string                  // the parameter that all keys further in belong to
+	title                func(key string) string // what the window calls a key, "" for what it shows no other way; nil = none has a title
 }
 
 // in returns the scope one key further in.
 func (s scope) in(key string) scope {
-	s.where = s.place(key)
+	if key != "" {
+		s.where, s.title = s.place(key), nil
+	}
 	return s
 }
 
+// place says where a key stands: "RV1, cracks at (crack)".
 func (s scope) place(key string) string {
+	name := s.named(key)
 	switch {
 	case key == "":
 		return s.where
-	case s.where == "":
-		return key
+	case s.where == "" || strings.HasPrefix(name, s.where+" "): // "oil temperature (temperature)" tells the section
+		return name
 	}
-	if strings.Contains(s.where, " ") {
-		return s.where + ", " + key
-	}
-	return s.where + "." + key
+	return s.where + ", " + name
 }
 
 // bad books a fault at a node. key is the parameter, or "" for the scope itself.
@@ -139,7 +141,7 @@ func (r *reader) unknownKey(s scope, e entry, n *yaml.Node, known []string) {
 		r.bad(s, e.at, e.key, "a comma ends a value inside {}; write the number with a decimal point")
 		return
 	}
-	r.bad(s, e.at, e.key, "unknown key%s", guess(e.key, known))
+	r.bad(s, e.at, e.key, "unknown key%s", s.guess(e.key, known))
 }
 
 // items lists a sequence.
@@ -186,13 +188,18 @@ func (r *reader) text(s scope, fields map[string]entry, key string) string {
 
 // word returns one of a few words, or "".
 func (r *reader) word(s scope, fields map[string]entry, key string, words ...string) string {
+	return r.wordCalled(s, fields, key, func(string) string { return "" }, words...)
+}
+
+// wordCalled is word for words that the window calls something else.
+func (r *reader) wordCalled(s scope, fields map[string]entry, key string, called func(string) string, words ...string) string {
 	e, ok := fields[key]
 	if !ok {
 		return ""
 	}
-	t, ok := r.scalar(s, e.value, key, "one of: "+strings.Join(words, ", "))
+	t, ok := r.scalar(s, e.value, key, "one of: "+strings.Join(namedAll(words, called), ", "))
 	if ok && !slices.Contains(words, t) {
-		r.bad(s, e.value, key, "is %q%s", t, guess(t, words))
+		r.bad(s, e.value, key, "is %q%s", t, guessOf(t, words, called))
 		return ""
 	}
 	return t

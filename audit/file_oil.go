@@ -16,7 +16,7 @@ import (
 )
 
 func (r *reader) oil(n, root *yaml.Node) {
-	s := scope{where: "oil"}
+	s := scope{where: "oil", title: oilTitle}
 	if isNull(n) && r.misspelt {
 		return
 	}
@@ -25,7 +25,7 @@ func (r *reader) oil(n, root *yaml.Node) {
 		return
 	}
 	before := len(r.found)
-	f := r.fields(scope{}, n, "oil", "grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100",
+	f := r.fields(s, n, "", "grade", "temperature", "density", "viscosity", "viscosity_index", "viscosity_40", "viscosity_100",
 		"specific_heat", "bulk_modulus", "air", "start_temperature")
 	o := &r.file.Oil
 	if e, ok := f["grade"]; ok {

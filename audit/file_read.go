@@ -64,8 +64,8 @@ func (r *reader) format(n, root *yaml.Node) bool {
 var currencyCode = regexp.MustCompile(`^[A-Z]{3}$`)
 
 func (r *reader) site(n *yaml.Node) {
-	s := scope{where: "site"}
-	f := r.fields(scope{}, n, "site", "name", "customer", "author", "date", "note", "currency")
+	s := scope{where: "site"}.titled("site")
+	f := r.fields(s, n, "", "name", "customer", "author", "date", "note", "currency")
 	r.file.Site = Site{Name: r.text(s, f, "name"), Customer: r.text(s, f, "customer"), Author: r.text(s, f, "author"),
 		Date: r.text(s, f, "date"), Note: r.text(s, f, "note")}
 	if c := r.text(s, f, "currency"); currencyCode.MatchString(c) {
@@ -76,14 +76,14 @@ func (r *reader) site(n *yaml.Node) {
 }
 
 func (r *reader) issue(n *yaml.Node) {
-	s := scope{where: "report"}
-	f := r.fields(scope{}, n, "report", "owner", "number", "revision", "approved")
+	s := scope{}.titled("").in("report").titled("report")
+	f := r.fields(s, n, "", "owner", "number", "revision", "approved")
 	r.file.Issue = Issue{Owner: r.text(s, f, "owner"), Number: r.text(s, f, "number"), Revision: r.text(s, f, "revision"), Approved: r.text(s, f, "approved")}
 }
 
 func (r *reader) air(n *yaml.Node) {
-	s := scope{where: "air"}
-	f := r.fields(scope{}, n, "air", "temperature")
+	s := scope{where: "air"}.titled("air")
+	f := r.fields(s, n, "", "temperature")
 	r.file.Air, r.file.HasAir = r.optional(s, f, "temperature", units.Temperature)
 }
 
@@ -107,8 +107,8 @@ func (r *reader) positive(s scope, f map[string]entry, key string, d units.Dim) 
 }
 
 func (r *reader) energy(n *yaml.Node) {
-	s := scope{where: "energy"}
-	f := r.fields(scope{}, n, "energy", "price", "co2", "co2_year", "co2_basis", "credit_returned", "fuel_price", "fuel_co2", "fuel_density", "fuel_heating_value")
+	s := scope{where: "energy"}.titled("energy")
+	f := r.fields(s, n, "", "price", "co2", "co2_year", "co2_basis", "credit_returned", "fuel_price", "fuel_co2", "fuel_density", "fuel_heating_value")
 	a := r.file
 	if a.Price, a.HasPrice = r.optional(s, f, "price", units.EnergyPrice); a.HasPrice {
 		r.money(s, f["price"].value, "price", a.Price)
@@ -140,7 +140,7 @@ var axisKinds = []string{duty.Linear.String(), duty.Rotary.String()}
 // axisNames reads the axes.
 func (r *reader) axisNames(n *yaml.Node) {
 	s := scope{where: "axes"}
-	for _, e := range r.entries(scope{}, n, "axes") {
+	for _, e := range r.entries(s, n, "") {
 		r.axes[e.key] = true
 		if !r.id(s, e.at, "axis") {
 			continue
@@ -156,6 +156,7 @@ func (r *reader) axisNames(n *yaml.Node) {
 		}
 		kind := r.word(at, f, key, axisKinds...)
 		if kind == "" {
+			r.file.unreadAxes = append(r.file.unreadAxes, e.key)
 			continue
 		}
 		if kind == duty.Rotary.String() {

@@ -38,8 +38,8 @@ const readingHelp = "write STATE.BLOCK.QUANTITY, such as idling.P1.pressure; sta
 //	  idling.M1.power: 5.2 kW
 //	  working.P1.pressure: {value: 150 bar, note: gauge 2}
 func (r *reader) readings(n *yaml.Node) {
-	s := scope{where: "site_check"}
-	for _, e := range r.entries(scope{}, n, "site_check") {
+	s := scope{}.titled("").in("site_check")
+	for _, e := range r.entries(s, n, "") {
 		state, point, _ := strings.Cut(e.key, ".")
 		d, ok := ReadingDim(point)
 		if !ok || !slices.Contains(ReadingStates, state) || strings.Count(point, ".") != 1 {

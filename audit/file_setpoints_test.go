@@ -90,13 +90,13 @@ func TestSetPressureAndSetFlow(t *testing.T) {
 // Wrong use is refused by name, while reading or by the check of the circuit.
 func TestSetPointTracksRefused(t *testing.T) {
 	for _, c := range []struct{ old, now, want string }{
-		{`"P1.set_flow [L/min]": [30`, `"ram.set_flow [L/min]": [30`, "ram is an axis; set_flow is for a pump with control: pq"},
+		{`"P1.set_flow [L/min]": [30`, `"ram.set_flow [L/min]": [30`, "ram is an axis; set flow (set_flow) is for a pump with p/Q control (control: pq)"},
 		{`"P1.set_flow [L/min]": [30`, `"P1.set_flow [bar]": [30`, "not a unit of flow"},
 		{`"P1.set_flow [L/min]": [30`, `"P1.set_flow [L/min]": [-30`, "P1.set_flow: value 1 is below 0"},
 		{`"P1.set_flow [L/min]": [30`, `"P9.set_flow [L/min]": [30`, `there is no axis or block "P9"`},
-		{`"P1.set_flow [L/min]": [30`, `"V1.set_flow [L/min]": [30`, "V1.set_flow, but only a pump with control: pq"},
-		{"control: pq", "control: pressure, set_pressure: 100 bar", "P1.set_pressure, but only a pump with control: pq"},
-		{"    \"P1.set_flow [L/min]\": [30, 30, 20, 20]\n", "", "a pq pump needs its set_flow"},
+		{`"P1.set_flow [L/min]": [30`, `"V1.set_flow [L/min]": [30`, "V1.set_flow, but only a pump with p/Q control takes one (control: pq)"},
+		{"control: pq", "control: pressure, set_pressure: 100 bar", "P1.set_pressure, but only a pump with p/Q control takes one (control: pq)"},
+		{"    \"P1.set_flow [L/min]\": [30, 30, 20, 20]\n", "", "a pump with p/Q control needs its set flow (set_flow)"},
 	} {
 		text := strings.Replace(pressPQ, c.old, c.now, 1)
 		if text == pressPQ {

@@ -121,7 +121,7 @@ func TestAxisLoadSide(t *testing.T) {
 		t.Error(err)
 	}
 	_, found := Parse([]byte("format: barlitre/1\naxes: {ram: {load: x}, drum: {kind: round}, arm: {kind: linear, mass: 3}}\n"), nil, "")
-	for _, want := range []string{"axes.ram.kind: is missing", `axes.drum.kind: is "round"`, "axes.arm.mass: unknown key"} {
+	for _, want := range []string{"axes, ram, kind: is missing", `axes, drum, kind: is "round"`, "axes, arm, mass: unknown key"} {
 		if !strings.Contains(fmt.Sprint(found), want) {
 			t.Errorf("no %q in %v", want, found)
 		}

@@ -99,7 +99,7 @@ func blockPlace(target string, words []string, m *yaml.Node, kind *circuit.Kind)
 		for _, q := range kind.Params {
 			known = append(known, q.Key)
 		}
-		return p, fmt.Errorf("%s: %s has no parameter %q%s", target, kind.Name, p.key, guess(p.key, known))
+		return p, fmt.Errorf("%s: %s has no parameter %q%s", target, circuit.WithWord(kind.Title, kind.Name), p.key, scope{}.ofKind(kind).guess(p.key, known))
 	}
 	if len(words) == 2 {
 		return p, nil

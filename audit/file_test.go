@@ -210,7 +210,7 @@ func TestOilFaults(t *testing.T) {
 		"{viscosity_40: 8 mm2/s, viscosity_100: 46 mm2/s, temperature: 50 C}":            "must be above that at 100 C",
 		"{grade: VG 46, viscosity_100: 7 mm2/s, viscosity_index: 99, temperature: 50 C}": "keep one",
 		"{grade: VG 46, viscosity_index: 900, temperature: 50 C}":                        "viscosity index is 900, must be 0 to 400",
-		"{grade: VG 46, temperature: 50 C, density: 0 kg/m3}":                            "oil.density: is 0 kg/m3, must be above 0",
+		"{grade: VG 46, temperature: 50 C, density: 0 kg/m3}":                            "oil, density: is 0 kg/m3, must be above 0",
 	} {
 		if _, found := oilFile(t, oil); len(found) != 1 || !strings.Contains(found[0].Text, want) {
 			t.Errorf("%s: got %v, want %q", oil, found, want)

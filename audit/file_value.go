@@ -2,6 +2,7 @@ package audit
 
 import (
 	"math"
+	"strings"
 
 	"gopkg.in/yaml.v3"
 
@@ -59,9 +60,17 @@ func bounds(f map[string]entry) string {
 	return s
 }
 
+// article puts the article before a noun.
+func article(noun string) string {
+	if strings.ContainsAny(noun[:1], "aeiou") {
+		return "an " + noun
+	}
+	return "a " + noun
+}
+
 // quantity reads "160 bar".
 func (r *reader) quantity(s scope, n *yaml.Node, key string, d units.Dim) (circuit.Value, bool) {
-	t, ok := r.scalar(s, n, key, "a "+d.Name())
+	t, ok := r.scalar(s, n, key, article(d.Name()))
 	if !ok {
 		return circuit.Value{}, false
 	}
@@ -80,7 +89,7 @@ func (r *reader) bound(s scope, f map[string]entry, key string, v circuit.Value,
 	if !ok {
 		return math.NaN()
 	}
-	t, ok := r.scalar(s, e.value, key, "a "+d.Name())
+	t, ok := r.scalar(s, e.value, key, article(d.Name()))
 	if !ok {
 		return math.NaN()
 	}

@@ -34,7 +34,7 @@ var hydraulicMotorKind = &Kind{
 	check: func(k *Kind, b *Block, bad func(Level, string, string, ...any)) {
 		checkMachine(k, b, bad)
 		if b.Word("axis") != "" && b.Word("hold") == "" {
-			bad(Stops, "hold", "say what holds the axis at standstill: hold: valve, pump or brake")
+			bad(Stops, "hold", "say what holds the axis at standstill: valve, pump or brake (hold)")
 		}
 	},
 	build: buildHydraulicMotor,

@@ -150,11 +150,11 @@ func TestPumpControlsRefused(t *testing.T) {
 	}{
 		{with("power_limit: 5 kW"), nil, "a fixed pump has no displacement to cut back"},
 		{with("control: power"), nil, "needs its power limit (power_limit)"},
-		{with("control: pq; set_flow: 10 L/min"), nil, "a pq pump needs its set_pressure"},
-		{with("control: pq; set_pressure: 100 bar"), []duty.Track{fine}, "needs its set_flow"},
+		{with("control: pq; set_flow: 10 L/min"), nil, "a pump with p/Q control needs its set pressure (set_pressure)"},
+		{with("control: pq; set_pressure: 100 bar"), []duty.Track{fine}, "needs its set flow (set_flow)"},
 		{with("control: pq; set_flow: 10 L/min"), []duty.Track{low}, "below 0"},
-		{with("control: commanded"), []duty.Track{setFlow}, "P1.set_flow, but only a pump with control: pq"},
-		{plain, []duty.Track{ofValve}, "V1.set_pressure, but only a pump with control: pq"},
+		{with("control: commanded"), []duty.Track{setFlow}, "P1.set_flow, but only a pump with p/Q control takes one (control: pq)"},
+		{plain, []duty.Track{ofValve}, "V1.set_pressure, but only a pump with p/Q control takes one (control: pq)"},
 		{with("control: pq; set_pressure: 100 bar; follows: ram"), nil, "keep one of the two (follows, control)"},
 	} {
 		d := pushing(1e3, 1)

@@ -68,6 +68,17 @@ type Param struct {
 // ratedPressure limits the pressure of a block that states it as its Rating.
 var ratedPressure = Param{Key: "rating", Title: "Rated pressure", Symbol: "pr", Dim: units.Pressure, Above: true, Max: 2000e5, Text: "highest permitted working pressure"}
 
+// Takes says what is to be written for a parameter that is no number.
+func (p *Param) Takes() string {
+	switch p.Type {
+	case AxisRef:
+		return "the name of an axis"
+	case FileRef:
+		return "the name of a file"
+	}
+	return "one of " + join(p.choicesInText(), "or")
+}
+
 // Section is a group of the parameters of a kind that has many; "" where it has few.
 type Section string
 
@@ -379,7 +390,7 @@ func (p *Param) CheckValue(v Value) string {
 // checkChoice reports what is wrong with a word for this parameter, or "".
 func (p *Param) checkChoice(w string) string {
 	if p.Type == Choice && !slices.Contains(p.Choices, w) {
-		return fmt.Sprintf("is %q, must be one of %s", w, join(p.Choices, "or"))
+		return fmt.Sprintf("is %q, must be one of %s", w, join(p.choicesInText(), "or"))
 	}
 	return ""
 }

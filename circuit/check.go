@@ -101,24 +101,25 @@ func (k *checker) parameters(b *Block, kind *Kind) {
 	for key, v := range b.Values {
 		switch p := kind.Param(key); {
 		case p == nil || p.Type != Number:
-			k.say(Stops, b, key, "a %s has no number %q", kind.Title, key)
+			k.say(Stops, b, key, "this kind of block, %s, takes no number for %q", InSentence(kind.Title), key)
 		default:
 			if fault := p.CheckValue(v); fault != "" {
-				k.say(Stops, b, key, "%s (%s) %s", strings.ToLower(p.Title), key, fault)
+				k.say(Stops, b, key, "%s %s", p.InText(), fault)
 			}
 		}
 	}
 	for key, w := range b.Words {
 		p := kind.Param(key)
 		if p == nil || p.Type == Number {
-			k.say(Stops, b, key, "a %s has no choice %q", kind.Title, key)
+			k.say(Stops, b, key, "this kind of block, %s, takes no word for %q", InSentence(kind.Title), key)
 			continue
 		}
 		if fault := p.checkChoice(w.Text); fault != "" {
-			k.say(Stops, b, key, "%s %s", key, fault)
+			k.say(Stops, b, key, "%s %s", p.InText(), fault)
 		}
 		if p.Type == AxisRef && k.axis(w.Text) == nil {
-			k.say(Stops, b, key, "there is no axis %q; the axes are %s", w.Text, join(k.axisNames(), "and"))
+			k.say(Stops, b, key, "%s is %q, but there is no axis of that name; %s", p.InText(), w.Text, k.axesThere()).because(UnknownAxis, "")
+			k.found[len(k.found)-1].Axis = w.Text
 		}
 	}
 	for _, p := range kind.Params {
@@ -126,7 +127,7 @@ func (k *checker) parameters(b *Block, kind *Kind) {
 		if p.Need && !v && b.Word(p.Key) == "" {
 			want := p.Text
 			if p.Type == Choice {
-				want += ": " + join(p.choiceNames(), "or")
+				want += ": " + join(p.choicesInText(), "or")
 			}
 			k.say(Stops, b, p.Key, "%s is missing (%s)", p.InText(), want).because(MissingValue, "")
 		}
@@ -150,12 +151,19 @@ func (k *checker) axis(name string) *duty.Axis {
 	return nil
 }
 
-func (k *checker) axisNames() []string {
-	var out []string
+// axesThere says which axes there are.
+func (k *checker) axesThere() string {
+	var names []string
 	for _, a := range k.axes {
-		out = append(out, a.Name)
+		names = append(names, a.Name)
 	}
-	return out
+	switch len(names) {
+	case 0:
+		return "no axis is given yet"
+	case 1:
+		return "the only one is " + names[0]
+	}
+	return "the axes are " + join(names, "and")
 }
 
 // lines checks that every port named exists and stands in one line only.
@@ -173,6 +181,8 @@ func (k *checker) lines() {
 			b := k.c.Block(p.Block)
 			if b == nil {
 				bad("", "line names %s, but there is no block %s", p, p.Block)
+				f := &k.found[len(k.found)-1]
+				f.Cause, f.Port = UnknownBlock, p
 				continue
 			}
 			kind := KindNamed(b.Kind)
@@ -267,10 +277,10 @@ func (k *checker) takes(d *duty.Duty, b *Block, w duty.What) {
 		}
 	case w == duty.SetPressure || w == duty.SetFlow:
 		if !isPQ(b) {
-			k.say(Stops, b, "control", "duty %q has a track %s.%s, but only a pump with control: pq takes one; set that, or drop the track", d.Name, b.ID, w)
+			k.say(Stops, b, "control", "duty %q has a track %s.%s, but only a pump with p/Q control takes one (control: pq); set that, or drop the track", d.Name, b.ID, w)
 		}
 	case w != duty.Command || (!isValve(b) && control != "commanded") || follows(b) != "":
-		k.say(Stops, b, "control", "duty %q has a track %s.%s, but %s does not take commands; set control: commanded, or drop the track", d.Name, b.ID, w, b.ID)
+		k.say(Stops, b, "control", "duty %q has a track %s.%s, but %s does not take commands; let its control be commanded (control: commanded), or drop the track", d.Name, b.ID, w, b.ID)
 	}
 }
 
@@ -298,7 +308,7 @@ func (k *checker) setPoints(d *duty.Duty, b *Block) {
 	}
 	for _, w := range []duty.What{duty.SetPressure, duty.SetFlow} {
 		if _, ok := b.Values[w.String()]; !ok && d.Track(b.ID, w) == nil {
-			k.say(Stops, b, w.String(), "a pq pump needs its %s: give it a number, or duty %q a track %s.%s", w, d.Name, b.ID, w)
+			k.say(Stops, b, w.String(), "a pump with p/Q control needs its %s: give it a number, or duty %q a track %s.%s", KindNamed(b.Kind).Param(w.String()).InText(), d.Name, b.ID, w)
 		}
 	}
 }

@@ -68,7 +68,7 @@ func (k *checker) axisOf(d *duty.Duty, a duty.Axis) {
 			if len(follow) > 0 {
 				who = ", which " + join(ids(follow), "and") + " follows"
 			}
-			bad(follow, "no actuator in circuit %q moves axis %s%s; set axis: %s on a cylinder or motor", k.c.Name, a.Name, who, a.Name)
+			bad(follow, "no actuator in circuit %q moves axis %s%s; give a cylinder or motor that axis (axis: %s)", k.c.Name, a.Name, who, a.Name)
 		}
 		return
 	}
@@ -148,13 +148,13 @@ func (k *checker) joined(a duty.Axis, movers []*Block, bad func(at []*Block, for
 func (k *checker) holding(act, control *Block, direct []*Block) {
 	hold := KindNamed(act.Kind).WordOf(act, "hold")
 	if hold == "pump" && isValve(control) {
-		k.say(Stops, act, "hold", "it is held by the pump, but %s throttles it; use hold: valve or brake", control.ID).because(HeldByValve, "")
+		k.say(Stops, act, "hold", "it is held by the pump, but %s throttles it; let the valve or a brake hold it (hold: valve or brake)", control.ID).because(HeldByValve, "")
 	}
 	if hold == "pump" && k.c.PumpAtRest == Stop {
 		k.say(Stops, act, "hold", "it is held by the pump, but pumps are switched off at rest (pump_at_rest: stop); let them keep turning, or hold it by a valve or brake (hold)")
 	}
 	if hold == "pump" && len(direct) > 0 {
-		k.say(Stops, act, "hold", "it is held by the pump, but %s closes at rest; use hold: valve", direct[0].ID).because(HeldByValve, "")
+		k.say(Stops, act, "hold", "it is held by the pump, but %s closes at rest; let the valve hold it (hold: valve)", direct[0].ID).because(HeldByValve, "")
 	}
 }
 

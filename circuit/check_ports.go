@@ -27,7 +27,7 @@ func (k *checker) ports() {
 			k.say(Stops, b, "control", "a pump with negative flow control needs a pilot line at its port LS, from the line before an orifice in the return of the open centre")
 		}
 		if x := k.of[PortRef{b.ID, "X"}] != nil; b.Kind == kindSequence && x != (kind.WordOf(b, "pilot") == "external") {
-			k.say(Stops, b, "pilot", "with pilot: external it needs a pilot line at its port X, with pilot: inlet none")
+			k.say(Stops, b, "pilot", "piloted from outside (pilot: external) it needs a pilot line at its port X, piloted from its inlet (pilot: inlet) none")
 		}
 		if b.Kind == kindJunction && joined == 0 {
 			k.say(Warns, b, "", "the junction joins nothing").because(JoinsNothing, "")

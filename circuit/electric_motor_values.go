@@ -92,7 +92,7 @@ func checkElectricMotor(k *Kind, b *Block, bad func(Level, string, string, ...an
 		bad(Stops, "poles", "a motor has an even number of poles, not %d", p)
 	}
 	if commandsTorque(b) && !varies(b) {
-		bad(Stops, "commands", "no command reaches it: with commands: torque it follows an axis (follows) or a track (control: commanded)")
+		bad(Stops, "commands", "no command reaches it: where a torque is commanded (commands: torque) it follows an axis (follows) or a track (control: commanded)")
 	}
 	idle, ok := b.Values["idle_speed"]
 	n, _ := number(b, "speed")

@@ -55,6 +55,8 @@ const (
 	JoinsNothing  Cause = "joins nothing"  // a junction
 	NoLoadSignal  Cause = "no load signal" // a pump that follows a load pressure
 	NoFollower    Cause = "no follower"    // an axis without a control; Block is the only one that can follow it
+	UnknownAxis   Cause = "unknown axis"   // Axis is named and not there
+	UnknownBlock  Cause = "unknown block"  // the block of Port is named and not there
 	LoadNotHeld   Cause = "load not held"  // by a valve or brake of its own; the choice is the user's
 )
 

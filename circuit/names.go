@@ -18,22 +18,26 @@ func (p *Param) NameOf(word string) string {
 	return strings.ReplaceAll(word, "_", " ")
 }
 
-func (p *Param) choiceNames() []string {
+// InText names a parameter within a finding: see WithWord.
+func (p *Param) InText() string { return WithWord(p.Title, p.Key) }
+
+// choicesInText names the choices of a parameter as InText names parameters.
+func (p *Param) choicesInText() []string {
 	var out []string
 	for _, c := range p.Choices {
-		out = append(out, p.NameOf(c))
+		out = append(out, WithWord(p.NameOf(c), c))
 	}
 	return out
 }
 
-// InText names a parameter within a finding, which is read beside its field as well as beside its file: its title, and
-// in brackets its key where the title does not tell it.
-func (p *Param) InText() string {
-	title := InSentence(p.Title)
-	if strings.EqualFold(p.Title, p.Key) {
-		return title
+// WithWord names a thing within a text that is read beside the window as well as beside the file: what it is called, and
+// in brackets the word of the file where the name does not tell that.
+func WithWord(title, word string) string {
+	called := InSentence(title)
+	if strings.EqualFold(title, word) {
+		return called
 	}
-	return title + " (" + p.Key + ")"
+	return called + " (" + word + ")"
 }
 
 // InSentence makes a title part of a sentence; an abbreviation stays as it is.

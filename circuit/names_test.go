@@ -28,9 +28,11 @@ func TestCatalogSpeaksOfTheTrade(t *testing.T) {
 		}
 		for i := range k.Params {
 			p := &k.Params[i]
-			texts[p.Key] = strings.Join(append(p.choiceNames(), p.Title, p.Text, p.Source, p.Derived), " | ")
+			texts[p.Key] = strings.Join([]string{p.Title, p.Text, p.Source, p.Derived}, " | ")
 			seen := map[string]bool{}
-			for _, name := range p.choiceNames() {
+			for _, word := range p.Choices {
+				name := p.NameOf(word)
+				texts[p.Key] += " | " + name
 				if seen[name] {
 					t.Errorf("%s.%s: two choices are called %q", k.Name, p.Key, name)
 				}

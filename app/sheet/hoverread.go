@@ -105,7 +105,7 @@ func (e *editor) findingLines(id string) []string {
 		return nil
 	}
 	g := e.s.findings.list[i]
-	text := strings.TrimPrefix(e.s.ctx.Local(g.Text), id+": ")
+	text := strings.TrimPrefix(strings.TrimPrefix(e.s.ctx.Local(g.Text), id+": "), id+", ")
 	lines := wrap("⚠ "+levelWords[g.Level]+": "+text, 11, 330)
 	if len(lines) > 3 {
 		lines = append(lines[:3:3], "…")

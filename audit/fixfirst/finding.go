@@ -123,7 +123,7 @@ func (e Edit) String() string {
 func (e Edit) apply(f *audit.File) error {
 	switch e.act {
 	case hours:
-		return f.SetDuty(e.Target, "hours", e.Value)
+		return switchOff(f, e.Target)
 	case rewire:
 		name, port, _ := strings.Cut(e.Target, "/")
 		if err := f.Disconnect(name, port); err != nil {

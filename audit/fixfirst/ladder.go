@@ -299,6 +299,16 @@ func (l *Ladder) Restored() (edits Cure, names []string) {
 	return edits, names
 }
 
+// priced reports whether a step of a class has a price, or with "" any step.
+func (l *Ladder) priced(c Class) bool {
+	return slices.ContainsFunc(l.Steps, func(x *Step) bool { return x.Unpriced == "" && (c == "" || x.Class == c) })
+}
+
+// unpriced reports whether there are steps of a class, or with "" of any, and none has a price: then a saving of 0 would be no result.
+func (l *Ladder) unpriced(c Class) bool {
+	return !l.priced(c) && slices.ContainsFunc(l.Steps, func(x *Step) bool { return c == "" || x.Class == c })
+}
+
 // Total is what all priced cures save together.
 func (l *Ladder) Total() Saving {
 	var sum Saving

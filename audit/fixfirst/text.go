@@ -140,6 +140,9 @@ func (w words) verdict(l *Ladder) string {
 		return fmt.Sprintf("The circuit \"%s\" as it stands does not do its work: %s of motion a cycle are missing. %s. What the cures save cannot be compared, for the machine delivers less as it stands; put right in the order below it does that work and draws %s a year. That is the machine a proposal has to beat.",
 			l.Circuit, seconds(l.Lacks), faults, w.energy(l.Cured.Drawn))
 	}
+	if l.unpriced("") {
+		return fmt.Sprintf("%s. What putting it right would save is not known; why stands with each below. The circuit \"%s\" draws %s a year as it is run now.", faults, l.Circuit, w.energy(l.AsFound.Drawn))
+	}
 	share := ""
 	if l.AsFound.Drawn > 0 {
 		share = ", " + units.Format(total.Energy/l.AsFound.Drawn, units.Percent, 3)
@@ -165,6 +168,8 @@ func (w words) ladder(l *Ladder) []Row {
 		all := w.figures("all, in order", l.Total(), l.AsFound, l.Cured, l.Edits.String())
 		if l.Lacks > leastLack {
 			all = notCompared()
+		} else if l.unpriced("") {
+			all = w.figures("all, in order", unknown, l.AsFound, l.Cured, "")
 		}
 		rows = append(rows, Row{r.Name, append(r.Cells, all...), true})
 	}
@@ -214,13 +219,16 @@ func (w words) split(l *Ladder, s Split) SplitPage {
 	page := SplitPage{Proposal: s.Proposal, Head: []string{"", "energy a year", "money a year", "share"}}
 	row := func(sum bool, name string, x Saving, figures []audit.Figure) {
 		share := "n/a"
-		if s.Whole.Energy != 0 {
+		if s.Whole.Energy != 0 && !math.IsNaN(x.Energy) {
 			share = units.Format(x.Energy/s.Whole.Energy, units.Percent, 3)
 		}
 		page.Rows = append(page.Rows, Row{name, append(figures, audit.Figure{Text: share}), sum})
 	}
 	for _, c := range Classes() {
 		x := s.Class[c]
+		if l.unpriced(c) {
+			x = unknown
+		}
 		row(false, "of "+l.Circuit+": "+string(c), x, []audit.Figure{{Text: w.energy(x.Energy)}, {Text: w.money(x.Money)}})
 	}
 	adds := "what " + s.Proposal + " adds"

@@ -235,7 +235,7 @@ func (d *Duty) Check() []Problem {
 	for _, tr := range d.Tracks {
 		name := tr.Of + "." + tr.What.String()
 		if len(tr.Values) != len(d.Time) {
-			bad(name, "has %d values for %d time stamps; give one a time stamp", len(tr.Values), len(d.Time))
+			bad(name, "has %s for %s; each value needs a time stamp", counted(len(tr.Values), "value"), counted(len(d.Time), "time stamp"))
 		}
 		sound(tr.Values, tr.What.bounded(), func() {
 			if i, text := tr.fault(); text != "" {
@@ -276,4 +276,11 @@ func (tr *Track) fault() (row int, text string) {
 		}
 	}
 	return 0, ""
+}
+
+func counted(n int, one string) string {
+	if n == 1 {
+		return "1 " + one
+	}
+	return fmt.Sprintf("%d %ss", n, one)
 }

@@ -50,7 +50,7 @@ func Laws(what duty.What, kind duty.AxisKind) (out []Law) {
 	speed, position := duty.Speed.Dim(kind), duty.Position.Dim(kind)
 	moves := []Channel{{"speed", "for friction: speed", speed, true}, {"position", "or position", position, true}}
 	sides := []Channel{{"a", "pressure at A", units.Pressure, false}, {"b", "pressure at B", units.Pressure, true}}
-	smoothed := Number{"window", "smoothed over", units.Time, "10 rows, 0.05 s at least"}
+	smoothed := Number{"window", "smoothed over", units.Time, "10 rows, 0.05\u202fs at least"}
 	none := "none"
 	displacement := Number{"displacement", "displacement", units.DisplacementPerRev, ""}
 	gear := Number{"gear", "gear, motor over axis", units.Ratio, "1"}
@@ -64,12 +64,12 @@ func Laws(what duty.What, kind duty.AxisKind) (out []Law) {
 		{Word: OfPosition, Says: "The slope of the position, by parabolas of least squares over a window of time.", gives: []duty.What{duty.Speed},
 			Channels: []Channel{{"position", "position", position, false}}, Numbers: []Number{smoothed}},
 		{Word: OfFlow, Says: "The flow into side A over what it fills: area of the bore, or displacement and gear.", gives: []duty.What{duty.Speed},
-			Channels: []Channel{{"flow", "flow into A", units.Flow, false}}, Numbers: append(swallows, Number{"volumetric", "volumetric efficiency", units.Ratio, "100 %"})},
+			Channels: []Channel{{"flow", "flow into A", units.Flow, false}}, Numbers: append(swallows, Number{"volumetric", "volumetric efficiency", units.Ratio, "100\u202f%"})},
 		{Word: Chambers, Says: "What the pressures push with, less friction and the stated mass, which the circuit adds again.", gives: []duty.What{duty.Load}, only: []duty.AxisKind{duty.Linear},
 			Channels: append(sides, moves...), Numbers: []Number{{"bore", "bore", units.Length, ""}, {"rod", "rod", units.Length, none}, {"friction", "friction", units.Force, none},
 				{"viscous", "viscous friction", units.ViscousFriction, none}, {"mass", "moved mass", units.Mass, none}, smoothed}},
 		{Word: OfMotor, Says: "The torque of the motor at the axis, less losses and the stated inertia.", gives: []duty.What{duty.Load}, only: []duty.AxisKind{duty.Rotary},
-			Channels: append(sides, moves...), Numbers: []Number{displacement, gear, {"efficiency", "hydraulic-mechanical efficiency", units.Ratio, "100 %"}, {"inertia", "moment of inertia", units.Inertia, none}, smoothed}},
+			Channels: append(sides, moves...), Numbers: []Number{displacement, gear, {"efficiency", "hydraulic-mechanical efficiency", units.Ratio, "100\u202f%"}, {"inertia", "moment of inertia", units.Inertia, none}, smoothed}},
 		{Word: OfPower, Says: "The mechanical power over the speed; 0 where the axis stands.", gives: []duty.What{duty.Load},
 			Channels: []Channel{{"power", "power", units.Power, false}, {"speed", "speed", speed, true}, {"position", "or position", position, true}}, Numbers: []Number{smoothed}},
 		{Word: Turned, Says: "The channel with its sign turned.", Channels: whole},

@@ -8,6 +8,7 @@ import (
 
 	"barlitre/circuit/duty"
 	"barlitre/circuit/recording/channels"
+	"barlitre/machines/units"
 )
 
 // Track says how a track is made of channels.
@@ -45,7 +46,7 @@ func (p Part) Cut(d *duty.Duty) error {
 	}
 	first, last := t[0], t[len(t)-1]
 	if !(p.From < last && p.To > first) {
-		return fmt.Errorf("from %.4g s to %.4g s is not in the recording, which lasts from %.4g s to %.4g s", p.From, p.To, first, last)
+		return fmt.Errorf("from %s to %s is not in the recording, which lasts from %s to %s", units.Seconds(p.From, 4), units.Seconds(p.To, 4), units.Seconds(first, 4), units.Seconds(last, 4))
 	}
 	from, to := math.Max(p.From, first), math.Min(p.To, last)
 	pick := func(v []float64) (out []float64) {

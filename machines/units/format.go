@@ -29,11 +29,29 @@ func (u Unit) Label() string {
 
 // Format returns an SI value in unit u with its label, for the screen: see Number.
 func Format(si float64, u Unit, digits int) string {
-	text := Number(u.FromSI(si), digits)
-	if label := u.Label(); label != "" {
-		text += narrowGap + label
+	return Join(Number(u.FromSI(si), digits), u.Label())
+}
+
+// Short is Format without the zeros that only fill up the decimals, for running text: "2 s" where Format writes "2.000 s".
+func Short(si float64, u Unit, digits int) string {
+	number := Number(u.FromSI(si), digits)
+	if whole, decimals, has := strings.Cut(number, "."); has && !strings.Contains(decimals, "e") {
+		number = strings.TrimSuffix(whole+"."+strings.TrimRight(decimals, "0"), ".")
 	}
-	return text
+	return Join(number, u.Label())
+}
+
+// Seconds is Short for a time [s], in seconds.
+func Seconds(t float64, digits int) string { return Short(t, second, digits) }
+
+var second = Preferred(Time, Metric)
+
+// Join sets a written number and its unit such that no line breaks between them; the number alone where it has no unit.
+func Join(number, unit string) string {
+	if unit == "" {
+		return number
+	}
+	return number + narrowGap + unit
 }
 
 // Number returns x with the given number of significant digits (at least 1, at most 17), a real minus

@@ -5,6 +5,8 @@ import (
 	"math"
 
 	"gonum.org/v1/gonum/dsp/fourier"
+
+	"barlitre/machines/units"
 )
 
 // Found is a shift and how sure it is.
@@ -30,12 +32,12 @@ func (f Found) Sure() bool { return f.Height >= leastHeight && f.Height-f.Next >
 
 // String says it in numbers.
 func (f Found) String() string {
-	s := fmt.Sprintf("%.4g s are added to its times, where the correlation is %.3f", f.Offset, f.Height)
+	s := fmt.Sprintf("%s are added to its times, where the correlation is %.3f", units.Seconds(f.Offset, 4), f.Height)
 	if f.Next > -1 {
-		s += fmt.Sprintf(" (next best %.3f at %.4g s)", f.Next, f.NextAt)
+		s += fmt.Sprintf(" (next best %.3f at %s)", f.Next, units.Seconds(f.NextAt, 4))
 	}
 	if !math.IsNaN(f.Drift) {
-		s += fmt.Sprintf("; over the recording the clocks drift apart by %.2g s an hour", 3600*f.Drift)
+		s += fmt.Sprintf("; over the recording the clocks drift apart by %s an hour", units.Seconds(3600*f.Drift, 2))
 	}
 	if !f.Sure() {
 		s += "; that is not clear: the events repeat or differ, so give the offset"
@@ -49,7 +51,7 @@ func Offset(t1, v1, t2, v2 []float64, within float64) (Found, error) {
 		return Found{}, fmt.Errorf("%d and %d rows are too few to be compared", len(t1), len(t2))
 	}
 	if !(within > 0) {
-		return Found{}, fmt.Errorf("the shift to look for must be above 0 s")
+		return Found{}, fmt.Errorf("the shift to look for must be above %s", units.Seconds(0, 1))
 	}
 	f, err := search(t1, v1, t2, v2, 0, within)
 	if err != nil {
@@ -79,7 +81,7 @@ func search(t1, v1, t2, v2 []float64, around, within float64) (Found, error) {
 		}
 	}
 	if math.IsInf(found, -1) || found == -1 {
-		return Found{}, fmt.Errorf("the recordings do not overlap within %.6g s of one another", within)
+		return Found{}, fmt.Errorf("the recordings do not overlap within %s of one another", units.Seconds(within, 6))
 	}
 	out := Found{Height: found, Next: -1, Resolution: h, Drift: math.NaN()}
 	out.Offset = base + (float64(best-least)+vertex(r, best))*h

@@ -3,6 +3,8 @@ package channels
 import (
 	"fmt"
 	"math"
+
+	"barlitre/machines/units"
 )
 
 // Track is a derived channel.
@@ -76,7 +78,7 @@ func parabola(t, x []float64, at float64) (slope, bend float64) {
 // SpeedOfPosition takes the speed from a position [m or rad].
 func SpeedOfPosition(t, x []float64, window float64) Track {
 	v, _ := Slope(t, x, window)
-	return Track{v, fmt.Sprintf("v = dx/dt, parabolas by least squares over %.3g s (Savitzky-Golay)", window)}
+	return Track{v, fmt.Sprintf("v = dx/dt, parabolas by least squares over %s (Savitzky-Golay)", units.Seconds(window, 3))}
 }
 
 // SpeedOfFlow takes the speed from the flow into the side A of an actuator and what it
@@ -132,18 +134,18 @@ func (c Cylinder) Load(t, pA, pB, v []float64, window float64) (Track, error) {
 }
 
 func (c Cylinder) formula(both bool, window float64) string {
-	s := fmt.Sprintf("F = p_A·%.5g m²", c.A)
+	s := "F = p_A·" + times(c.A, "m²")
 	if both {
-		s += fmt.Sprintf(" − p_B·%.5g m²", c.B)
+		s += " − p_B·" + times(c.B, "m²")
 	}
 	if c.Friction != 0 {
-		s += fmt.Sprintf(" − %.5g N·sgn v", c.Friction)
+		s += " − " + times(c.Friction, "N·sgn v")
 	}
 	if c.Damping != 0 {
-		s += fmt.Sprintf(" − %.5g N s/m·v", c.Damping)
+		s += " − " + times(c.Damping, "N·s/m·v")
 	}
 	if c.Mass != 0 {
-		s += fmt.Sprintf(" − %.5g kg·dv/dt (over %.3g s)", c.Mass, window)
+		s += " − " + times(c.Mass, "kg·dv/dt") + " (over " + units.Seconds(window, 3) + ")"
 	}
 	return s
 }
@@ -190,15 +192,18 @@ func (m Motor) Load(t, pA, pB, w []float64, window float64) (Track, error) {
 		}
 		out[i] -= m.Inertia * acc[i]
 	}
-	f := fmt.Sprintf("T = %.5g·%.5g m³/rad·(p_A − p_B)", m.Gear, m.Displacement)
+	f := fmt.Sprintf("T = %.5g·%s·(p_A − p_B)", m.Gear, times(m.Displacement, "m³/rad"))
 	if m.Efficiency != 1 {
 		f += fmt.Sprintf("·%.4g, divided by it while the load drives", m.Efficiency)
 	}
 	if m.Inertia != 0 {
-		f += fmt.Sprintf(" − %.5g kg m²·dω/dt (over %.3g s)", m.Inertia, window)
+		f += " − " + times(m.Inertia, "kg·m²·dω/dt") + " (over " + units.Seconds(window, 3) + ")"
 	}
 	return Track{out, f}, nil
 }
+
+// times writes a factor of a formula with its unit, and what it stands before.
+func times(x float64, unit string) string { return units.Join(fmt.Sprintf("%.5g", x), unit) }
 
 func top(v []float64) (m float64) {
 	for _, x := range v {

@@ -71,7 +71,7 @@ func TestLoadOfPressures(t *testing.T) {
 			t.Fatalf("row %d: %g N, want %g; %s", i, got.Values[i], want[i], got.Formula)
 		}
 	}
-	if got.Formula != "F = p_A·0.00503 m² − p_B·0.00256 m² − 800 N·sgn v − 1500 N s/m·v − 900 kg·dv/dt (over 0.05 s)" {
+	if got.Formula != "F = p_A·0.00503\u202fm² − p_B·0.00256\u202fm² − 800\u202fN·sgn v − 1500\u202fN·s/m·v − 900\u202fkg·dv/dt (over 0.05\u202fs)" {
 		t.Error(got.Formula)
 	}
 	if _, err := c.Load(ts, pA, pB, nil, 0.05); err == nil {

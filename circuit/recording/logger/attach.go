@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"time"
+
+	"barlitre/machines/units"
 )
 
 const startForm = "2006-01-02 15:04:05.999"
@@ -30,12 +32,12 @@ func (r *Recording) Attach(other *Recording, offset float64, how string) (*Recor
 		}
 	}
 	if outside > len(r.Time)-2 {
-		return nil, fmt.Errorf("%s runs from %.6g s to %.6g s of %s, where that has no rows; give another offset", other.Name, first, last, r.Name)
+		return nil, fmt.Errorf("%s runs from %s to %s of %s, where that has no rows; give another offset", other.Name, units.Seconds(first, 6), units.Seconds(last, 6), r.Name)
 	}
 	out := *r
 	out.Series, out.Corrections = append([]*Series{}, r.Series...), append([]Correction{}, r.Corrections...)
 	out.Corrections = append(out.Corrections, Correction{Key: "second recording: " + other.Name, Count: len(other.Time), Warns: 10*outside > len(r.Time),
-		Text: fmt.Sprintf("%s, %d rows, one every %.4g s: %s", other.Name, len(other.Time), other.Interval, how),
+		Text: fmt.Sprintf("%s, %d rows, one every %s: %s", other.Name, len(other.Time), units.Seconds(other.Interval, 4), how),
 		Done: fmt.Sprintf("its channels are read on straight lines at the rows of %s; %d of %d rows lie outside of it, where its first or last value holds", r.Name, outside, len(r.Time))})
 	for _, c := range other.Corrections {
 		c.Key, c.File = other.Name+": "+c.Key, other.Name

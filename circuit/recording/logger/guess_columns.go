@@ -67,7 +67,7 @@ func (g *guesser) signal(n *numbers, i int, c Channel) {
 		}
 	}
 	if all > 0 && 10*in >= 9*all {
-		g.ask(c.Column+ScalingField, fmt.Sprintf("%s is a signal of 4 to 20 mA and nothing says what it means; say what its ends are, as in \"0 to 250 bar\", or \"mA\" to keep it as a current", c.Column))
+		g.ask(c.Column+ScalingField, fmt.Sprintf("%s is a signal of 4 to 20\u202fmA and nothing says what it means; say what its ends are, as in \"0 to 250 bar\", or \"mA\" to keep it as a current", c.Column))
 	}
 }
 

@@ -175,11 +175,11 @@ func (r *Recipe) check() error {
 		return fmt.Errorf("a file of fixed width needs widths, rising, where its columns begin")
 	}
 	if !(r.Air == 0 || r.Air > 0.3*units.Bar && r.Air < 1.2*units.Bar) {
-		return fmt.Errorf("the pressure of the air is %g Pa, must lie between 30000 and 120000", r.Air)
+		return fmt.Errorf("the pressure of the air is %s, must lie between 30000 and 120000", units.Join(fmt.Sprintf("%g", r.Air), "Pa"))
 	}
 	for _, p := range r.Time.Pauses {
 		if !(p > 0 && p < 1e9) {
-			return fmt.Errorf("a pause is %g s, must be above 0", p)
+			return fmt.Errorf("a pause is %s, must be above 0", units.Seconds(p, 6))
 		}
 	}
 	switch t := r.Time; {

@@ -11,6 +11,8 @@ import (
 	"path/filepath"
 	"slices"
 	"strings"
+
+	"barlitre/machines/units"
 )
 
 // part is one of the files that a recording was split into.
@@ -180,7 +182,7 @@ func (tl *timeline) joints() error {
 				widest, gap.Line, gap.T = d, tl.lineOf(b), tl.t[b]
 			}
 		case d <= 0 && tl.absolute() && tl.t[b] < tl.t[a] && over.Choice == "keep first":
-			return fmt.Errorf("%s begins %.6g s before the file before it; name them in order of time", tl.f.parts[k].name, tl.t[a]-tl.t[b])
+			return fmt.Errorf("%s begins %s before the file before it; name them in order of time", tl.f.parts[k].name, units.Seconds(tl.t[a]-tl.t[b], 6))
 		case d <= 0 && tl.repeats(a, b, last) && over.Choice == "keep first":
 			if over.Count == 0 {
 				over.Line, over.T = tl.lineOf(b), tl.t[b]
@@ -190,12 +192,12 @@ func (tl *timeline) joints() error {
 		}
 	}
 	if over.Count > 0 {
-		over.Text = fmt.Sprintf("%s of a file that the one before has already, by up to %.6g s; %d of them with the same values", counted(over.Count, "row"), most, same)
+		over.Text = fmt.Sprintf("%s of a file that the one before has already, by up to %s; %d of them with the same values", counted(over.Count, "row"), units.Seconds(most, 6), same)
 		over.Done, over.Warns = "left out, the file before counts", same < over.Count
 		tl.Corrections = append(tl.Corrections, over)
 	}
 	if gap.Count > 0 {
-		gap.Text = fmt.Sprintf("%s between the files, the widest of %.6g s", counted(gap.Count, "gap"), widest)
+		gap.Text = fmt.Sprintf("%s between the files, the widest of %s", counted(gap.Count, "gap"), units.Seconds(widest, 6))
 		gap.Done = "the times are kept; what lies between is taken as a straight line"
 		gap.Warns = widest > 10*tl.dt
 		tl.Corrections = append(tl.Corrections, gap)

@@ -65,7 +65,7 @@ func TestHourlyFiles(t *testing.T) {
 	if c := found(t, r, "overlap"); c.Count != 10 || c.Warns || c.File != "b.csv" || c.Line != 4 || !strings.Contains(c.Text, "10 of them with the same values") {
 		t.Errorf("%+v", c)
 	}
-	if c := found(t, r, "gap between files"); c.Count != 1 || c.T != 7220 || !strings.Contains(c.Text, "of 21 s") || c.File != "c.csv" || !c.Warns {
+	if c := found(t, r, "gap between files"); c.Count != 1 || c.T != 7220 || !strings.Contains(c.Text, "of 21\u202fs") || c.File != "c.csv" || !c.Warns {
 		t.Errorf("%+v", c)
 	}
 	if c := found(t, r, "joined"); c.Count != 3 {
@@ -74,7 +74,7 @@ func TestHourlyFiles(t *testing.T) {
 	if c := found(t, r, "further heads"); c.Count != 2 { // "Hour;10" and "Hour;11"; the rest is as above the first rows
 		t.Errorf("%+v", c)
 	}
-	if _, err := joinedOf(t, nil, hourly("", 3600, 7200), hourly("", 0, 3600)); err == nil || !strings.Contains(err.Error(), "b.csv begins 3600 s before") {
+	if _, err := joinedOf(t, nil, hourly("", 3600, 7200), hourly("", 0, 3600)); err == nil || !strings.Contains(err.Error(), "b.csv begins 3600\u202fs before") {
 		t.Errorf("in the wrong order: %v", err)
 	}
 }

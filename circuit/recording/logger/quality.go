@@ -192,13 +192,13 @@ func (q *inspector) cells() {
 			s.beyond.at(q.lineOf(i))
 		}
 	}
-	what := "the signal is below 3.6 or above 21 mA, which NE 43 keeps for faults"
+	what := "the signal is below 3.6 or above 21\u202fmA, which NE 43 keeps for faults"
 	if !s.loop {
-		what = "the signal is below −0.5 or above 10.5 V, which no healthy 0 to 10 V signal is"
+		what = "the signal is below −0.5 or above 10.5\u202fV, which no healthy 0 to 10\u202fV signal is"
 	}
 	fill("signal fault", s.faults, true, fmt.Sprintf("in %s %s", counted(s.faults.count, "row"), what))
 	if s.beyond.count > 0 {
-		q.say(Correction{Key: "signal limits", Count: s.beyond.count, Line: s.beyond.first, Text: fmt.Sprintf("in %s the signal is outside of 3.8 to 20.5 mA, where NE 43 has it measure nothing", counted(s.beyond.count, "row"))})
+		q.say(Correction{Key: "signal limits", Count: s.beyond.count, Line: s.beyond.first, Text: fmt.Sprintf("in %s the signal is outside of 3.8 to 20.5\u202fmA, where NE 43 has it measure nothing", counted(s.beyond.count, "row"))})
 	}
 }
 
@@ -313,6 +313,6 @@ func (q *inspector) below() {
 		}
 	}
 	if n > 0 && q.sorted[0] > -0.02*top {
-		q.say(q.where(Correction{Key: "flow below zero", Count: n, Text: fmt.Sprintf("%s a flow a little below zero, at most %.3g L/min: noise of a meter at rest", rowsHave(n), -q.sorted[0]/units.LitrePerMinute)}, first))
+		q.say(q.where(Correction{Key: "flow below zero", Count: n, Text: fmt.Sprintf("%s a flow a little below zero, at most %s: noise of a meter at rest", rowsHave(n), units.Short(-q.sorted[0], units.Preferred(units.Flow, units.Metric), 3))}, first))
 	}
 }

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"math"
 	"slices"
-	"strings"
 
 	"barlitre/machines/units"
 )
@@ -103,7 +102,7 @@ func (q *inspector) spike(key string, rows []int, text string, choices ...string
 		}
 	}
 	c := q.where(Correction{Key: key, Count: len(rows), Warns: true, Choice: choice, Choices: choices,
-		Text: fmt.Sprintf("%s %s, the largest %s at %.6g s", isRows(len(rows)), text, q.shown(q.v[worst]), q.Time[worst])}, rows[0])
+		Text: fmt.Sprintf("%s %s, the largest %s at %s", isRows(len(rows)), text, q.shown(q.v[worst]), units.Seconds(q.Time[worst], 6))}, rows[0])
 	if choice == "remove" {
 		c.Done = "taken as straight lines between the values around"
 		q.s.removed = append(q.s.removed, rows...)
@@ -125,7 +124,7 @@ func isRows(n int) string {
 }
 
 func (q *inspector) shown(si float64) string {
-	return strings.TrimSpace(fmt.Sprintf("%.5g %s", q.s.unit.FromSI(si), q.s.Unit))
+	return units.Join(fmt.Sprintf("%.5g", q.s.unit.FromSI(si)), q.s.Unit)
 }
 
 // pressure looks at where a pressure rests: against vacuum it rests at that of the air, and
@@ -150,11 +149,11 @@ func (q *inspector) pressure() {
 		}
 		if gauge == "gauge" {
 			air := q.Recipe.Air
-			c.Done = "the standard atmosphere of 1.01325 bar is taken off"
+			c.Done = "the standard atmosphere of 1.01325\u202fbar is taken off"
 			if air == 0 {
 				air = units.AtmosphericPressure
 			} else {
-				c.Done = fmt.Sprintf("the pressure of the air, stated as %.6g bar, is taken off", air/units.Bar)
+				c.Done = fmt.Sprintf("the pressure of the air, stated as %s, is taken off", units.Join(fmt.Sprintf("%.6g", air/units.Bar), "bar"))
 			}
 			s.shift -= air
 		}
@@ -218,7 +217,7 @@ func (q *inspector) clipped() {
 			why = "an end of the stroke, or of what the sensor can tell"
 		}
 		q.say(q.where(Correction{Key: "clipped " + end.name, Count: rows, Warns: !stroke,
-			Text: fmt.Sprintf("%s (%.2g %% of %d) in %s at its %s value %s: %s", isRows(rows), 100*float64(rows)/float64(len(q.v)), len(q.v), counted(runs, "place"), end.name, q.shown(end.sign*limit), why)}, first))
+			Text: fmt.Sprintf("%s (%s of %d) in %s at its %s value %s: %s", isRows(rows), units.Join(fmt.Sprintf("%.2g", 100*float64(rows)/float64(len(q.v))), "%"), len(q.v), counted(runs, "place"), end.name, q.shown(end.sign*limit), why)}, first))
 	}
 }
 
@@ -309,5 +308,5 @@ func (q *inspector) stuck() {
 		return
 	}
 	q.say(q.where(Correction{Key: "stuck", Count: rows, Warns: true,
-		Text: fmt.Sprintf("stands still at %s for %.4g s (%d rows) while it is never still elsewhere", q.shown(q.v[at]), q.Time[at+longest-1]-q.Time[at], longest)}, at))
+		Text: fmt.Sprintf("stands still at %s for %s (%d rows) while it is never still elsewhere", q.shown(q.v[at]), units.Seconds(q.Time[at+longest-1]-q.Time[at], 4), longest)}, at))
 }

@@ -135,7 +135,7 @@ func (r *Recipe) scaled(column, choice string) error {
 		return fmt.Errorf("there is no channel %q", column)
 	case choice == "mA":
 	case !ok:
-		return fmt.Errorf("%s: %q is no scaling; write what 4 and 20 mA mean, as in \"0 to 250 bar\", or mA", column, choice)
+		return fmt.Errorf("%s: %q is no scaling; write what 4 and 20\u202fmA mean, as in \"0 to 250 bar\", or mA", column, choice)
 	default:
 		to, _ := unitOf(unit)
 		c.Scaling, c.Unit, c.Quantity, c.Absolute = k, to.Symbol, to.Dim.Name(), to.absolute

@@ -5,6 +5,8 @@ import (
 	"math"
 	"slices"
 	"strings"
+
+	"barlitre/machines/units"
 )
 
 // timeline makes rising times of stamps as they stand in the file, and the order of rows.
@@ -206,9 +208,9 @@ func (tl *timeline) sayJumps() {
 		r, p := tl.resets[0], tl.Recipe.Time.Pauses
 		done := "what follows is put one step after what was before; how long the pause was is not known"
 		if len(p) > 0 {
-			done = fmt.Sprintf("what follows is put after the pauses that the recipe tells, %s s", strings.Trim(fmt.Sprint(p[:min(len(p), len(tl.resets))]), "[]"))
+			done = fmt.Sprintf("what follows is put after the pauses that the recipe tells, %s", units.Join(strings.Trim(fmt.Sprint(p[:min(len(p), len(tl.resets))]), "[]"), "s"))
 		}
-		add("clock reset", tl.resets, len(p) < len(tl.resets), fmt.Sprintf("the clock jumps %s, the first time by %.6g s", times(len(tl.resets)), -(r.by)+tl.pause(0)),
+		add("clock reset", tl.resets, len(p) < len(tl.resets), fmt.Sprintf("the clock jumps %s, the first time by %s", times(len(tl.resets)), units.Seconds(-(r.by)+tl.pause(0), 6)),
 			done, "append", "append", "refuse")
 	}
 }
@@ -300,14 +302,14 @@ func (tl *timeline) gaps() error {
 		}
 	}
 	if !regular {
-		tl.Corrections = append(tl.Corrections, Correction{Key: "uneven steps", Text: fmt.Sprintf("rows follow each other unevenly, by %.4g s to %.4g s, half of them within %.4g s", least, most, tl.Interval)})
+		tl.Corrections = append(tl.Corrections, Correction{Key: "uneven steps", Text: fmt.Sprintf("rows follow each other unevenly, by %s to %s, half of them within %s", units.Seconds(least, 4), units.Seconds(most, 4), units.Seconds(tl.Interval, 4))})
 	}
 	if gaps > 0 {
 		if tl.choice("missing rows", "interpolate", "refuse") == "refuse" {
 			return fmt.Errorf("line %d: rows are missing, and the recipe refuses that", tl.lineOf(tl.row(first)))
 		}
 		tl.Corrections = append(tl.Corrections, Correction{Key: "missing rows", Count: missing, Line: tl.lineOf(tl.row(first)), T: times[first], Warns: longest > 10*tl.Interval,
-			Text: fmt.Sprintf("about %s missing in %s, the longest of %.4g s at %.6g s", counted(missing, "row"), counted(gaps, "gap"), longest, times[at]),
+			Text: fmt.Sprintf("about %s missing in %s, the longest of %s at %s", counted(missing, "row"), counted(gaps, "gap"), units.Seconds(longest, 4), units.Seconds(times[at], 6)),
 			Done: "taken as straight lines between the rows around", Choice: "interpolate", Choices: []string{"interpolate", "refuse"}})
 	}
 	tl.counted()

@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"slices"
+
+	"barlitre/machines/units"
 )
 
 // group returns the end of the run of rows with the stamp of row i.
@@ -150,5 +152,5 @@ func (tl *timeline) spread() {
 	}
 	tl.dt = h
 	tl.Corrections = append(tl.Corrections, Correction{Key: "one stamp", Count: tl.len() - len(sizes), Line: tl.lineOf(tl.row(0)), T: tl.at(0), Choice: "spread", Choices: []string{"spread", "keep first"},
-		Text: fmt.Sprintf("stamps come every %.6g s only, about %d rows share one", res, typical), Done: "rows are spread evenly over their interval"})
+		Text: fmt.Sprintf("stamps come every %s only, about %d rows share one", units.Seconds(res, 6), typical), Done: "rows are spread evenly over their interval"})
 }

@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"sort"
+
+	"barlitre/machines/units"
 )
 
 // Limits of the estimated error of energy [share]: our choice. Below the first an
@@ -86,19 +88,19 @@ func (c *Check) judge(means, blind bool, cycle float64) {
 	}
 	switch {
 	case blind && cycle > 0:
-		c.say(true, "logged every %.3g s: the error of the energy cannot be told from these rows, for a cycle of %.4g s has fewer than two; log faster", c.Interval, cycle)
+		c.say(true, "logged every %s: the error of the energy cannot be told from these rows, for a cycle of %s has fewer than two; log faster", units.Seconds(c.Interval, 3), units.Seconds(cycle, 4))
 	case blind:
-		c.say(true, "logged every %.3g s: the error of the energy cannot be told from these rows, for they hardly differ: the machine runs steadily, or its cycle goes into the interval; log faster for an hour", c.Interval)
+		c.say(true, "logged every %s: the error of the energy cannot be told from these rows, for they hardly differ: the machine runs steadily, or its cycle goes into the interval; log faster for an hour", units.Seconds(c.Interval, 3))
 	case math.IsNaN(c.Error):
 		c.say(false, "nothing moves under a load: there is no energy to judge the rate by")
 	case cycle > 0 && cycle < leastPerCycle*c.Interval:
-		c.say(true, "logged every %.3g s: fewer than %d rows a cycle are too few to tell the error of their energy (thinned or joined, they differ by %s); log faster", c.Interval, leastPerCycle, percent(c.Error))
+		c.say(true, "logged every %s: fewer than %d rows a cycle are too few to tell the error of their energy (thinned or joined, they differ by %s); log faster", units.Seconds(c.Interval, 3), leastPerCycle, percent(c.Error))
 	case c.Error <= Fair:
-		c.say(false, "logged every %.3g s: %s an error of about %s is left; fit for energy", c.Interval, how, percent(c.Error))
+		c.say(false, "logged every %s: %s an error of about %s is left; fit for energy", units.Seconds(c.Interval, 3), how, percent(c.Error))
 	case c.Error <= Poor:
-		c.say(true, "logged every %.3g s: %s an error of about %s is left; log faster, or state it", c.Interval, how, percent(c.Error))
+		c.say(true, "logged every %s: %s an error of about %s is left; log faster, or state it", units.Seconds(c.Interval, 3), how, percent(c.Error))
 	default:
-		c.say(true, "logged every %.3g s: %s an error of about %s is left; not fit for energy, log faster", c.Interval, how, percent(c.Error))
+		c.say(true, "logged every %s: %s an error of about %s is left; not fit for energy, log faster", units.Seconds(c.Interval, 3), how, percent(c.Error))
 	}
 }
 
@@ -124,12 +126,12 @@ func (c *Check) cycle(cycle float64) {
 	}
 	c.Multiple = math.Abs(r - math.Round(r))
 	if c.PerCycle < leastPerCycle {
-		c.say(true, "a cycle of %.4g s has %.3g rows; take %d at least", cycle, c.PerCycle, leastPerCycle)
+		c.say(true, "a cycle of %s has %.3g rows; take %d at least", units.Seconds(cycle, 4), c.PerCycle, leastPerCycle)
 		if c.Multiple < 0.02 {
-			c.say(true, "the interval of %.4g s and the cycle of %.4g s are whole multiples of each other: the rows meet the same places of every cycle", c.Interval, cycle)
+			c.say(true, "the interval of %s and the cycle of %s are whole multiples of each other: the rows meet the same places of every cycle", units.Seconds(c.Interval, 4), units.Seconds(cycle, 4))
 		}
 	} else {
-		c.say(false, "a cycle of %.4g s has %.4g rows", cycle, c.PerCycle)
+		c.say(false, "a cycle of %s has %.4g rows", units.Seconds(cycle, 4), c.PerCycle)
 	}
 }
 
@@ -280,7 +282,7 @@ func median(t []float64) float64 {
 // percent writes a share in plain digits.
 func percent(share float64) string {
 	if x := 100 * share; x >= 10 {
-		return fmt.Sprintf("%.0f %%", x)
+		return units.Join(fmt.Sprintf("%.0f", x), "%")
 	}
-	return fmt.Sprintf("%.2g %%", 100*share)
+	return units.Join(fmt.Sprintf("%.2g", 100*share), "%")
 }

@@ -1,0 +1,58 @@
+package fixfirst_test
+
+import (
+	"context"
+	"math"
+	"strings"
+	"testing"
+
+	"barlitre/audit/fixfirst"
+	"barlitre/machines/units"
+)
+
+// Where nothing that was found has a price, no saving of zero is shown: here the calendar has a break that is too short.
+func TestUnpricedIsNotZero(t *testing.T) {
+	f := asFound(parse(t, sources(t)["handling-machine"]))
+	if err := f.SetShift(0, "breaks", "09:30 - 09:45"); err != nil {
+		t.Fatal(err)
+	}
+	s := solve(t, asFound(f))
+	l, err := fixfirst.All(context.Background(), s, fixfirst.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := l[0].Page(units.Metric)
+	if len(l[0].Steps) != 1 || l[0].Steps[0].Unpriced == "" {
+		t.Fatalf("%+v", l[0].Steps)
+	}
+	if strings.Contains(p.Verdict, "less") || !strings.Contains(p.Verdict, "is not known") {
+		t.Error(p.Verdict)
+	}
+	all := p.Rows[len(p.Rows)-1].Cells
+	if e := all[len(all)-2]; !math.IsNaN(e.Value) || e.Text != "n/a" {
+		t.Errorf("all cures save %+v", e)
+	}
+}
+
+// By the calendar the hours of waiting become hours off: by hand, what waiting draws less the standby over its 1200 h
+// (750 h within shifts, and 0.5 h of break in 3 shifts on 6 days of 50 weeks).
+func TestIdleByCalendar(t *testing.T) {
+	f := asFound(parse(t, sources(t)["handling-machine"]))
+	if err := f.Put("heat.fan", "with the machine"); err != nil { // by thermostat it draws more at work when there is less waiting
+		t.Fatal(err)
+	}
+	s := solve(t, asFound(f))
+	l, err := fixfirst.All(context.Background(), s, fixfirst.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	x, waiting := l[0].Steps[0], s.Circuits[0].Duties[1]
+	hours := 750 + 0.5*3*6*50.0
+	if math.Abs(waiting.Duty.Hours/units.Hour-hours) > 1e-6 {
+		t.Fatalf("%s has %g h", waiting.Duty.Name, waiting.Duty.Hours/units.Hour)
+	}
+	want := hours * units.Hour * (waiting.Balance.SupplyIn.Total()/waiting.Balance.Cycle - 60)
+	if x.Unpriced != "" || !near(x.Alone.Energy, want, want) || !near(x.Alone.Money, want/units.KilowattHour*0.18, 1000) {
+		t.Errorf("%q: %g kWh, %g EUR, by hand %g kWh", x.Unpriced, x.Alone.Energy/units.KilowattHour, x.Alone.Money, want/units.KilowattHour)
+	}
+}
