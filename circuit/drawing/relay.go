@@ -1,14 +1,23 @@
 package drawing
 
-import "sort"
+import (
+	"slices"
+	"sort"
+)
 
 // relays is how often the branches of a net are laid anew at most.
 const relays = 3
 
-// branch is a part of a tree between two places where it branches or has a port.
-type branch struct {
-	edges []int
-	ends  [2]int // nodes
+// branch is a part of a tree between two places where it branches or has a port: nodes in line.
+type branch []int
+
+// edges lists the edges of a branch, or of another way.
+func (f *field) edges(way []int) map[int]bool {
+	out := make(map[int]bool, len(way))
+	for i := 1; i < len(way); i++ {
+		out[2*min(way[i-1], way[i])+f.axis(way[i-1], way[i])] = true
+	}
+	return out
 }
 
 // relay lays every branch of a tree anew while the rest of it stands: ports are joined one
@@ -39,16 +48,20 @@ func (f *field) branches(t *tree) []branch {
 			continue
 		}
 		seen[e] = true
-		b := branch{edges: []int{e}}
-		for i, node := range [2]int{e / 2, e/2 + f.delta[e&1]} {
-			for on := f.onward(t, node, e); on >= 0; on = f.onward(t, node, on) {
-				seen[on] = true
-				b.edges = append(b.edges, on)
-				node = on/2 + on/2 + f.delta[on&1] - node
-			}
-			b.ends[i] = node
-		}
-		out = append(out, b)
+		b := f.follow(t, e/2, e, seen)
+		slices.Reverse(b)
+		out = append(out, append(b, f.follow(t, e/2+f.delta[e&1], e, seen)...))
+	}
+	return out
+}
+
+// follow lists the nodes of a branch from one on that an edge leads to, and notes the edges.
+func (f *field) follow(t *tree, node, e int, seen map[int]bool) branch {
+	out := branch{node}
+	for on := f.onward(t, node, e); on >= 0; on = f.onward(t, node, on) {
+		seen[on] = true
+		node = on/2 + on/2 + f.delta[on&1] - node
+		out = append(out, node)
 	}
 	return out
 }
@@ -70,23 +83,25 @@ func (f *field) onward(t *tree, node, e int) int {
 	return -1
 }
 
-// relayBranch joins the two parts of a tree that a branch joins by the cheapest way, and
-// tells whether that is another one. Nothing is done where another branch was laid to this
-// one, or in place of it.
+// relayBranch joins the two parts of a tree that a branch joins by a cheaper way, and tells
+// whether there is one. Nothing is done where another branch was laid to this one, or in
+// place of it.
 func (f *field) relayBranch(t *tree, b branch) bool {
-	for _, e := range b.edges {
+	cut := f.edges(b)
+	for e := range cut {
 		if !t.has[e] {
 			return false
 		}
 	}
-	near, far := f.part(t, b, b.ends[0]), f.part(t, b, b.ends[1])
-	if len(near.edges)+len(far.edges)+len(b.edges) != len(t.edges) {
+	near, far := f.part(t, cut, b[0]), f.part(t, cut, b[len(b)-1])
+	if len(near.edges)+len(far.edges)+len(cut) != len(t.edges) {
 		return false
 	}
 	if len(far.nodes) > len(near.nodes) {
 		near, far = far, near
+		slices.Reverse(b)
 	}
-	way := f.between(&near, &far)
+	way := f.cheaper(&near, &far, f.costOf(&near, b))
 	if way == nil {
 		return false
 	}
@@ -96,26 +111,33 @@ func (f *field) relayBranch(t *tree, b branch) bool {
 			f.lay(t, e)
 		}
 	}
-	changed := false
-	was := map[int]bool{}
-	for _, e := range b.edges {
-		was[e] = true
+	for i := 1; i < len(way); i++ { // not by addWay: its end is on the tree as well
+		f.lay(t, 2*min(way[i-1], way[i])+f.axis(way[i-1], way[i]))
 	}
-	for i := 1; i < len(way); i++ {
-		e := 2*min(way[i-1], way[i]) + f.axis(way[i-1], way[i])
-		changed = changed || !was[e]
-		f.lay(t, e)
-	}
-	return changed
+	return true
 }
 
-// part is what hangs together with a node once a branch is out.
-func (f *field) part(t *tree, b branch, from int) tree {
-	out := tree{has: map[int]bool{}, on: map[int]bool{from: true}, nodes: []int{from}, ports: t.ports, stiff: t.stiff}
-	cut := map[int]bool{}
-	for _, e := range b.edges {
-		cut[e] = true
+// costOf is what a way from a tree costs, as a search counts it.
+func (f *field) costOf(t *tree, way []int) int32 {
+	cost := int32(0)
+	if len(t.edges) > 0 {
+		cost = costTee + f.turnCost(way[0])
 	}
+	was := -1
+	for i := 1; i < len(way); i++ {
+		d := dirOf(f.at(way[i]).sub(f.at(way[i-1])))
+		if was >= 0 && d != was {
+			cost += costBend + f.turnCost(way[i-1])
+		}
+		cost += f.stepCost(way[i-1], d, way[i])
+		was = d
+	}
+	return cost
+}
+
+// part is what hangs together with a node once the edges of a branch are cut.
+func (f *field) part(t *tree, cut map[int]bool, from int) tree {
+	out := tree{has: map[int]bool{}, on: map[int]bool{from: true}, nodes: []int{from}, ports: t.ports, stiff: t.stiff}
 	for k := 0; k < len(out.nodes); k++ {
 		node := out.nodes[k]
 		lines, _ := t.lines(f, node)
@@ -133,9 +155,10 @@ func (f *field) part(t *tree, b branch, from int) tree {
 	return out
 }
 
-// between is the cheapest way from one part of a tree to another: to its port where it is no
-// more, else to where no other net is in the way.
-func (f *field) between(near, far *tree) []int {
+// cheaper is a way from one part of a tree to another that costs less than given, nil where
+// there is none near them: to its port where the other is no more, else to where no other net
+// is in the way.
+func (f *field) cheaper(near, far *tree, than int32) []int {
 	var open []terminal
 	was := map[int]int8{}
 	for _, node := range far.nodes {
@@ -153,9 +176,13 @@ func (f *field) between(near, far *tree) []int {
 	if len(open) == 0 {
 		return nil
 	}
-	way := f.path(near, open)
+	f.scratch.goal = f.goalBox(open)
+	way, cost := f.pathInside(near, f.portBox(near), around)
 	for node, o := range was {
 		f.own[node] = o
+	}
+	if cost >= than {
+		return nil
 	}
 	first := 0
 	for i, node := range way {

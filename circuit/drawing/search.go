@@ -60,10 +60,7 @@ const around = 20
 // time that their lines need, not that of their area.
 func (f *field) path(t *tree, open []terminal) []int {
 	f.scratch.goal = f.goalBox(open)
-	ports := f.scratch.goal
-	for node := range t.ports {
-		ports = ports.with(node%f.w, node/f.w)
-	}
+	ports := f.portBox(t)
 	way, cost := f.pathInside(t, ports, around)
 	if way != nil && cost < costKnot+costStep*int32(len(way)) {
 		return way
@@ -73,6 +70,15 @@ func (f *field) path(t *tree, open []terminal) []int {
 	}
 	way, _ = f.pathInside(t, ports, f.w+f.h)
 	return way
+}
+
+// portBox is the box of the goals of a search and of all ports of its net.
+func (f *field) portBox(t *tree) span {
+	ports := f.scratch.goal
+	for node := range t.ports {
+		ports = ports.with(node%f.w, node/f.w)
+	}
+	return ports
 }
 
 // with is the box that holds a place too.
