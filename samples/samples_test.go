@@ -226,7 +226,8 @@ func TestStandByOfTheWinch(t *testing.T) {
 	}
 }
 
-// Every block has a place on whole modules, away from its neighbours.
+// Every block has a place on whole modules, away from its neighbours, and where a sheet of A4
+// has room for it at a module of 2 mm.
 func TestPlaces(t *testing.T) {
 	each(t, func(t *testing.T, s *audit.Solution) { places(t, s) })
 	eachStarter(t, func(t *testing.T, _ Starter, s *audit.Solution) { places(t, s) })
@@ -242,7 +243,7 @@ func places(t *testing.T, s *audit.Solution) {
 				continue
 			}
 			x, y := b.At[0], b.At[1]
-			if x != math.Trunc(x) || y != math.Trunc(y) || x < 0 || y < 0 || x > 72 || y > 64 {
+			if x != math.Trunc(x) || y != math.Trunc(y) || x < 0 || y < 0 || x > 76 || y > 68 {
 				t.Errorf("%s: %s stands at %v", c.Circuit.Name, b.ID, *b.At)
 			}
 			for _, o := range at {

@@ -69,6 +69,11 @@ func (p *part) shift(dx, dy float64) {
 	sym.Min, sym.Max = box.Min, box.Max
 	p.symbol = sym
 	p.body = movedBox(p.body, by)
+	blocks := make([]drawing.Box, len(p.blocks))
+	for i, b := range p.blocks {
+		blocks[i] = movedBox(b, by)
+	}
+	p.blocks = blocks
 	p.centre = drawing.Pt{X: p.centre.X + dx, Y: p.centre.Y + dy}
 }
 

@@ -1,8 +1,9 @@
 package figures
 
 import (
+	"cmp"
 	"math"
-	"sort"
+	"slices"
 
 	"barlitre/audit/pen"
 	"barlitre/circuit/drawing"
@@ -164,7 +165,7 @@ func (k *labeller) weigh(b drawing.Box, limit float64) (cost float64, ok bool) {
 
 // best returns the cheapest of the spots; ok is false if each lies on a label.
 func (k *labeller) best(spots []labelSpot) (labelSpot, bool) {
-	sort.SliceStable(spots, func(a, b int) bool { return spots[a].cost < spots[b].cost })
+	slices.SortStableFunc(spots, func(a, b labelSpot) int { return cmp.Compare(a.cost, b.cost) })
 	least, found := labelSpot{cost: math.Inf(1)}, false
 	for _, sp := range spots {
 		if sp.cost >= least.cost {

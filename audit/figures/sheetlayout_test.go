@@ -1,9 +1,11 @@
 package figures
 
 import (
+	"fmt"
 	"image"
 	"math"
 	"math/rand/v2"
+	"slices"
 	"strings"
 	"testing"
 
@@ -51,6 +53,40 @@ func TestShaftPassesThrough(t *testing.T) {
 	}
 	if count != 2 {
 		t.Errorf("%d couplings, want 2", count)
+	}
+}
+
+// TestShaftPassesSettingDevices: the shaft goes straight through pumps with a setting device,
+// which stands above it; where something stands there already the shaft goes round.
+func TestShaftPassesSettingDevices(t *testing.T) {
+	c := &circuit.Circuit{Blocks: []circuit.Block{{ID: "M1", Kind: "electric_motor", At: &[2]float64{0, 0}}}}
+	shaft := circuit.Line{Ports: []circuit.PortRef{{Block: "M1", Port: "shaft"}}}
+	for i, control := range []string{"pressure", "load_sensing", "pressure"} {
+		id := fmt.Sprint("P", i+1)
+		c.Blocks = append(c.Blocks, circuit.Block{ID: id, Kind: "pump", At: &[2]float64{20 + 25*float64(i), 0}, Words: map[string]circuit.Word{"control": {Text: control}}})
+		shaft.Ports = append(shaft.Ports, circuit.PortRef{Block: id, Port: "shaft"})
+	}
+	c.Lines = []circuit.Line{shaft}
+	s := NewSheet(c)
+	if len(s.stretches) != 3 {
+		t.Errorf("%d couplings, want 3", len(s.stretches))
+	}
+	for _, st := range s.stretches {
+		if len(st.pts) != 2 {
+			t.Errorf("a shaft goes round something: %v", st.pts)
+		}
+	}
+	ports := map[SheetPort]bool{}
+	for _, p := range s.Ports() {
+		ports[p] = true
+	}
+	if at := (SheetPort{circuit.PortRef{Block: "P2", Port: "LS"}, 59, -1}); !ports[at] {
+		t.Errorf("no port is said to stand at %v", at)
+	}
+	full := *c
+	full.Blocks = append(slices.Clone(c.Blocks), circuit.Block{ID: "RV1", Kind: "relief", At: &[2]float64{28, -6}})
+	if s = NewSheet(&full); len(s.nets) != 1 || s.parts[1].base.Name != "pump_var_pc" {
+		t.Errorf("%d couplings past %s with a valve in the way", len(s.nets), s.parts[1].base.Name)
 	}
 }
 

@@ -24,6 +24,7 @@ type part struct {
 	centre drawing.Pt    // of the heat disc
 	reach  []drawing.Box // room that moving parts need beside the symbol
 	solid  []drawing.Box // where no label may stand
+	blocks []drawing.Box // where no line may pass
 }
 
 // farthest is the largest coordinate that counts as a place on a sheet [M], 25 m of
@@ -82,12 +83,60 @@ func (p *part) stand() {
 	if p.body.Min.X > p.body.Max.X {
 		p.body = p.symbol.Box()
 	}
+	p.blocks = blocksOf(&p.symbol)
 	p.centre = p.heart()
 	p.reach = nil
 	if rod, ok := p.rodReach(); ok {
 		p.reach = append(p.reach, rod)
 		p.solid = append(p.solid, rod)
 	}
+}
+
+// blocksOf are the boxes of the pieces that a symbol consists of: lines keep out of them, and
+// may pass in the corners that the symbol leaves free. A box ends where its port does.
+func blocksOf(s *drawing.Symbol) []drawing.Box {
+	var boxes []drawing.Box
+	at := map[string]int{}
+	for _, q := range s.Prims {
+		i, known := at[q.Part]
+		if !known {
+			i, boxes = len(boxes), append(boxes, emptyBox())
+			at[q.Part] = i
+		}
+		boxes[i] = union(boxes[i], primBox(q))
+	}
+	for i := range boxes {
+		b := &boxes[i]
+		for _, q := range s.Ports {
+			if contains(grown(*b, stubLap), q.At) {
+				*b = endAt(*b, q)
+			}
+		}
+	}
+	return boxes
+}
+
+// stubLap is how near a port is that a piece of a symbol leads to [M].
+const stubLap = 0.2
+
+// endAt is a box that ends at a port where that lies at its edge.
+func endAt(b drawing.Box, q drawing.Port) drawing.Box {
+	at := func(edge *float64, port float64) {
+		if math.Abs(*edge-port) <= stubLap {
+			*edge = port
+		}
+	}
+	switch {
+	case q.Dir.X > 0:
+		at(&b.Max.X, q.At.X)
+	case q.Dir.X < 0:
+		at(&b.Min.X, q.At.X)
+	case q.Dir.Y > 0:
+		at(&b.Max.Y, q.At.Y)
+	case q.Dir.Y < 0:
+		at(&b.Min.Y, q.At.Y)
+	}
+	return b
 }
 
 // heart is the middle of the part of a symbol that does the work, without what sets it.

@@ -20,7 +20,7 @@ func (s *Sheet) Ports() []SheetPort {
 	var out []SheetPort
 	for i := range s.parts {
 		p := &s.parts[i]
-		sym, ok := drawing.Lookup(circuit.SymbolOf(s.circuit, p.block))
+		sym, ok := drawing.Lookup(p.base.Name)
 		if !ok {
 			continue
 		}

@@ -70,7 +70,7 @@ func (s *Sheet) routeInput() ([]drawing.Box, []drawing.Net) {
 			boxes = append(boxes, drawing.Box{Min: p.at, Max: p.at})
 			continue
 		}
-		boxes = append(boxes, p.symbol.Box())
+		boxes = append(boxes, p.blocks...)
 	}
 	for i := range s.parts {
 		boxes = append(boxes, s.parts[i].reach...)
@@ -124,6 +124,9 @@ func (s *Sheet) splitShafts() {
 			out = append(out, n)
 			continue
 		}
+		for _, e := range ends[1 : len(ends)-1] {
+			s.parts[e.part].passThrough()
+		}
 		for i := 1; i < len(ends); i++ {
 			a, b := ends[i-1], ends[i]
 			_, da := s.endAt(a)
@@ -132,7 +135,8 @@ func (s *Sheet) splitShafts() {
 			b.opposite = i < len(ends)-1 && db.X > 0
 			for _, e := range []end{a, b} {
 				if e.opposite {
-					s.parts[e.part].addOpposite(e.port)
+					at, dir := s.endAt(e)
+					s.parts[e.part].addOpposite(drawing.Port{At: at, Dir: dir})
 				}
 			}
 			out = append(out, lineNet{ends: []end{a, b}, kind: n.kind, tank: -1})
@@ -154,16 +158,43 @@ func (s *Sheet) passable(e end) bool {
 			return false
 		}
 	}
-	for _, r := range p.symbol.Prims {
-		if r.Part == "control" {
-			return false
-		}
-	}
-	return true
+	return !s.coversOthers(e.part)
 }
 
-// addOpposite draws a second stub of the shaft, on the other side of the machine.
-func (p *part) addOpposite(port string) {
+// passThrough takes the symbol that has its setting device above the shaft, where there is one.
+func (p *part) passThrough() {
+	if sym, ok := drawing.Lookup(p.base.Name + "_through"); ok {
+		p.base = sym.Keep(func(port string) bool { _, used := p.base.Port(port); return used })
+		p.stand()
+	}
+}
+
+// coversOthers tells whether a part with its setting device above the shaft would lie over
+// more of the other symbols than it does now.
+func (s *Sheet) coversOthers(i int) bool {
+	now, then := s.parts[i], s.parts[i]
+	then.passThrough()
+	for k := range s.parts {
+		if o := &s.parts[k]; k != i && then.covers(o) > now.covers(o) {
+			return true
+		}
+	}
+	return false
+}
+
+// covers is how much of what is drawn of two parts lies in the same place [M²].
+func (p *part) covers(o *part) float64 {
+	area := 0.0
+	for _, a := range p.blocks {
+		for _, b := range o.blocks {
+			area += shared(a, b)
+		}
+	}
+	return area
+}
+
+// addOpposite draws a second stub of the shaft, to the other side of the machine.
+func (p *part) addOpposite(to drawing.Port) {
 	for _, q := range p.symbol.Prims {
 		if q.Part != "shaft" {
 			continue
@@ -177,6 +208,7 @@ func (p *part) addOpposite(port string) {
 		box := union(p.symbol.Box(), primBox(turned))
 		p.symbol.Min, p.symbol.Max = box.Min, box.Max
 		p.solid = append(p.solid, primBox(turned))
+		p.blocks = append(p.blocks, endAt(primBox(turned), to))
 	}
 }
 

@@ -10,7 +10,11 @@ const (
 	up
 )
 
-var stepOf = [4]Pt{right: {1, 0}, down: {0, 1}, left: {-1, 0}, up: {0, -1}}
+var (
+	stepOf = [4]Pt{right: {1, 0}, down: {0, 1}, left: {-1, 0}, up: {0, -1}}
+	stepX  = [4]int{right: 1, left: -1}
+	stepY  = [4]int{down: 1, up: -1}
+)
 
 func opposite(d int) int { return d ^ 2 }
 
@@ -26,7 +30,8 @@ func dirOf(d Pt) int {
 }
 
 // field is the sheet as a grid of whole modules. An edge is numbered by its
-// left or upper node and its axis, 2*node + 0 (to the right) or + 1 (down).
+// left or upper node and its axis, 2*node + 0 (to the right) or + 1 (down). No line
+// comes to the rim of the grid, so that every node on a line has four neighbours.
 type field struct {
 	x0, y0, w, h int
 	delta        [4]int  // change of node index for a step
@@ -36,7 +41,7 @@ type field struct {
 	exits        []int16 // per node: what makes it a bad place to cross, in units of costExit
 	own          []int8  // per node: ports of the net being routed, see openAny
 	ports        []int16 // per node: ports, those of the net being routed left out
-	window       Box     // where a way is looked for
+	window       span    // where a way is looked for
 	scratch      search
 }
 
@@ -75,7 +80,7 @@ func newField(blocks []Box, nets []Net) (*field, bool) {
 	f.block, f.used = make([]int32, 2*n), make([]int16, 2*n)
 	f.knots, f.exits = make([]int16, n), make([]int16, n)
 	f.own, f.ports = make([]int8, n), make([]int16, n)
-	f.scratch.init(4 * n)
+	f.scratch.states = make([]reached, 4*n)
 	for _, b := range blocks {
 		f.put(b)
 	}
@@ -93,18 +98,13 @@ func (f *field) at(node int) Pt {
 	return Pt{float64(node%f.w + f.x0), float64(node/f.w + f.y0)}
 }
 
-// neighbour is the node one step on, -1 beyond the grid.
-func (f *field) neighbour(node, d int) int {
-	x, y := node%f.w, node/f.w
-	switch {
-	case d == right && x == f.w-1, d == left && x == 0, d == down && y == f.h-1, d == up && y == 0:
-		return -1
-	}
-	return node + f.delta[d]
+// inner tells whether a place lies inside the rim of the grid.
+func (f *field) inner(p Pt) bool {
+	x, y := p.X-float64(f.x0), p.Y-float64(f.y0)
+	return x >= 1 && y >= 1 && x <= float64(f.w-2) && y <= float64(f.h-2)
 }
 
-// edge is the number of the edge that leaves node in direction d; the
-// neighbour must exist.
+// edge is the number of the edge that leaves node in direction d.
 func (f *field) edge(node, d int) int {
 	if d == left || d == up {
 		node += f.delta[d]
@@ -200,12 +200,7 @@ func boolAxis(level bool) int {
 
 // occupied tells whether a line lies on node along the axis, 0 = x, 1 = y.
 func (f *field) occupied(node int, axis int) bool {
-	back := [2]int{left, up}[axis]
-	if f.used[2*node+axis] > 0 {
-		return true
-	}
-	prev := f.neighbour(node, back)
-	return prev >= 0 && f.used[2*prev+axis] > 0
+	return f.used[2*node+axis] > 0 || f.used[2*(node-f.delta[axis])+axis] > 0
 }
 
 // stepCost is the price of the step from node in direction d to next.
@@ -223,10 +218,12 @@ func (f *field) stepCost(node, d, next int) int32 {
 		cost += costKnot
 	}
 	cost += costExit * int32(f.exits[next])
-	for _, side := range [2]int{(d + 1) & 3, (d + 3) & 3} {
-		if beside := f.neighbour(node, side); beside >= 0 && f.neighbour(next, side) >= 0 && f.used[f.edge(beside, d)] > 0 {
-			cost += costNear
-		}
+	aside := 2 * f.delta[1-axis]
+	if f.used[e+aside] > 0 {
+		cost += costNear
+	}
+	if f.used[e-aside] > 0 {
+		cost += costNear
 	}
 	return cost
 }

@@ -68,7 +68,7 @@ const (
 )
 
 const (
-	margin   = 8       // room for routes round the outermost blocks [M]
+	margin   = 9       // room for routes round the outermost blocks, and the rim [M]
 	maxNodes = 400_000 // larger sheets get plain elbows, to bound time and memory
 )
 
@@ -136,6 +136,9 @@ func RouteSome(blocks []Box, nets []Net, laid []Route, lay map[int]bool) []Route
 func (f *field) treeOf(n Net, r Route) tree {
 	t := tree{has: map[int]bool{}, on: map[int]bool{}, ports: map[int]terminal{}, stiff: n.Type == Shaft || n.Type == Rod}
 	for _, g := range r.Segments {
+		if !f.inner(g[0]) || !f.inner(g[1]) {
+			continue // beyond all that is there now
+		}
 		a, b := f.node(g[0]), f.node(g[1])
 		d := dirOf(f.at(b).sub(f.at(a)))
 		for node := a; node != b && d >= 0 && f.at(node).on(f.at(a), f.at(b)); node += f.delta[d] {

@@ -11,6 +11,7 @@ var portsOf = map[string]string{
 	"tank": "T", "pressure_source": "P", "junction": "1 2 3 4", "electric_motor": "shaft E", "converter": "M L",
 	"pump_fixed_1": "shaft S P D", "pump_fixed_2": "shaft S P D", "pump_var_1": "shaft S P D", "pump_var_2": "shaft S P D",
 	"pump_var_pc": "shaft S P D", "pump_var_power": "shaft S P D", "pump_var_pq": "shaft S P D", "unloading_pilot": "P T X", "unloading": "P A T", "diesel_engine": "shaft", "pump_var_ls": "shaft S P D LS",
+	"pump_var_pc_through": "shaft S P D", "pump_var_ls_through": "shaft S P D LS", "pump_var_power_through": "shaft S P D", "pump_var_pq_through": "shaft S P D", "pump_var_nf_through": "shaft S P D LS", "radial_switched_through": "shaft S P D LS",
 	"motor_fixed_1": "shaft A B D", "motor_fixed_2": "shaft A B D", "motor_var": "shaft A B D",
 	"relief": "P T", "check": "in out", "pilot_check": "V C X", "orifice": "A B",
 	"dcv_4_3_closed": "P A B T LS", "dcv_4_3_open": "P A B T LS", "dcv_4_3_tandem": "P A B T LS", "dcv_4_3_float": "P A B T LS",
@@ -267,6 +268,30 @@ func TestTrianglesShowPumpAndMotor(t *testing.T) {
 		if got != count {
 			t.Errorf("%s: %d triangles out and %d in, want %v", name, got[0], got[1], count)
 		}
+	}
+}
+
+// Where the shaft of a machine goes on, nothing of its setting device stands in the way.
+func TestShaftPasses(t *testing.T) {
+	found := 0
+	for _, s := range all(t) {
+		if !strings.HasSuffix(s.Name, "_through") {
+			continue
+		}
+		found++
+		for _, p := range s.Prims {
+			for _, q := range p.Pts {
+				if q.X > 4.2 && math.Abs(q.Y) <= 0.5 {
+					t.Errorf("%s: the %s stands in the way at %v", s.Name, p.Part, q)
+				}
+			}
+		}
+		if b, ok := Lookup(strings.TrimSuffix(s.Name, "_through")); !ok || len(b.Ports) != len(s.Ports) || b.Own != s.Own {
+			t.Errorf("%s is not like %s", s.Name, b.Name)
+		}
+	}
+	if found != 6 {
+		t.Errorf("%d machines let their shaft pass, want 6", found)
 	}
 }
 

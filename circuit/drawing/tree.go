@@ -65,6 +65,8 @@ func (f *field) grow(n Net) tree {
 	}
 	if t.bent > 0 {
 		f.prune(&t)
+	} else {
+		f.relay(&t)
 	}
 	return t
 }
@@ -135,7 +137,7 @@ func (f *field) axis(a, b int) int {
 // lines tells in which of the four directions lines of the tree leave node.
 func (t *tree) lines(f *field, node int) (out [4]bool, degree int) {
 	for d := range out {
-		if f.neighbour(node, d) >= 0 && t.has[f.edge(node, d)] {
+		if t.has[f.edge(node, d)] {
 			out[d] = true
 			degree++
 		}
@@ -159,8 +161,7 @@ func (f *field) route(i int, n Net, t tree) Route {
 			r.Through = true
 		}
 		d, node := e&1, e/2
-		back := f.neighbour(node, opposite(d))
-		if back >= 0 && t.has[f.edge(node, opposite(d))] && !t.breaksAt(f, node) {
+		if t.has[f.edge(node, opposite(d))] && !t.breaksAt(f, node) {
 			continue // in the middle of a run
 		}
 		end := node + f.delta[d]
