@@ -46,7 +46,7 @@ var arrows = map[string]arrow{
 	"audit/whole":                {},
 	"audit/thermal":              {outside: []string{"gonum.org/v1/gonum"}},
 	"audit/look":                 {ours: []string{"audit", "circuit", "machines/units"}},
-	"audit/fixfirst":             {ours: []string{"audit", "audit/look", "circuit", "machines", "machines/units"}},
+	"audit/fixfirst":             {ours: []string{"audit", "audit/calendar", "audit/look", "circuit", "machines", "machines/units"}},
 	"audit/sitecheck":            {ours: []string{"audit", "audit/fixfirst", "audit/look", "circuit", "machines/units"}},
 	"audit/cure":                 {ours: []string{"audit", "circuit", "audit/figures", "machines/units"}},
 }

@@ -122,7 +122,7 @@ func TestSecondLogger(t *testing.T) {
 	if a := g.Imports[0].Also; len(a) != 1 || math.Abs(a[0].Offset-(3.217-10)) > 0.02 || a[0].Unclear {
 		t.Errorf("%+v", a)
 	}
-	if !strings.Contains(fmt.Sprint(found), "aligned by pA with P main, -6.7") {
+	if !strings.Contains(fmt.Sprint(found), "aligned by pA with P main, −6.7") {
 		t.Error(found)
 	}
 	if got := g.Sources[0].Files(); len(got) != 2 || got[1] != "second.csv" {
