@@ -106,9 +106,28 @@ func (b *bench) told(e document.Event) {
 // solved waits until the present revision is solved and told.
 func (b *bench) solved() {
 	b.t.Helper()
+	b.until(func() bool {
+		running, _, _ := b.doc.Solving()
+		return !running && len(b.queue) == 0 && !b.laying()
+	})
+}
+
+// warmed waits until the solution has its oil temperatures too: nothing else is to come then.
+func (b *bench) warmed() {
+	b.t.Helper()
+	b.until(func() bool {
+		running, _, _ := b.doc.Solving()
+		s, _ := b.doc.Solution()
+		return !running && s != nil && !s.Pending && len(b.queue) == 0 && !b.laying()
+	})
+}
+
+// until takes events and what is posted until something holds.
+func (b *bench) until(holds func() bool) {
+	b.t.Helper()
 	deadline := time.After(3 * time.Minute) // with the race detector on a busy machine
 	for {
-		if running, _, _ := b.doc.Solving(); !running && len(b.queue) == 0 && !b.laying() {
+		if holds() {
 			return
 		}
 		select {

@@ -118,7 +118,7 @@ func openLarge(t testing.TB, least int) *bench {
 	}
 	b.pump()
 	b.s.setWide(true)
-	b.solved()
+	b.warmed()
 	return b
 }
 
