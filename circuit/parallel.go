@@ -141,7 +141,6 @@ func (p *parallel) join(ctx context.Context, chunks []*chunk, room <-chan struct
 // guess balances a chunk from a start of its own.
 func (p *parallel) guess(ctx context.Context, ch *chunk, i int, parts PartReceiver) {
 	from, r := p.cuts[i], p.newRun()
-	defer r.end()
 	var before *Sample
 	if from > 0 {
 		if ch.start, _, ch.err = r.all(ctx, State{}, from-leadSteps, from, Receivers{}); ch.err != nil {
@@ -152,6 +151,7 @@ func (p *parallel) guess(ctx context.Context, ch *chunk, i int, parts PartReceiv
 		before = r.sample.clone()
 	}
 	ch.run(ctx, r, from, p.cuts[i+1], parts.Part(from, p.cuts[i+1], before))
+	r.end()
 }
 
 func (p *parallel) newRun() *run { return newRun(p.c, p.params, p.cond, p.s) }

@@ -39,8 +39,9 @@ func Run(ctx context.Context, c *Compiled, params []float64, s *duty.Series, con
 		return st, Certificate{}, err
 	}
 	r := newRun(c, params, cond, s)
-	defer r.end()
-	return r.all(ctx, st, 0, len(s.T), to)
+	end, cert, err := r.all(ctx, st, 0, len(s.T), to)
+	r.end()
+	return end, cert, err
 }
 
 // fits reports what parameters or a series lack to be those of the circuit.
@@ -137,7 +138,8 @@ func (c *Compiled) newSolver() *balance.Solver {
 	return balance.NewSolver(c.n)
 }
 
-// end hands the memory of the solver on. The run cannot go on after it.
+// end hands the memory of the solver on; after a panic, which may have left it in disorder, it is
+// not to be called. The run cannot go on after it.
 func (r *run) end() {
 	r.solvers.Put(r.solver)
 	r.solver, r.step.solver = nil, nil

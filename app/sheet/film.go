@@ -3,6 +3,7 @@ package sheet
 import (
 	"image"
 
+	"barlitre/app/station"
 	"barlitre/audit/pen"
 )
 
@@ -89,7 +90,11 @@ func (e *editor) roll() bool {
 	size := e.pen.Image().Rect
 	p, edits, r, shown, pixels := e.picture(e.sheet, true).kept(), f.edits, f.reel, f.shown, e.pixels(size.Dx())
 	go func() {
-		made <- finished{r.draw(p, size.Dx(), size.Dy(), pixels, shown), edits}
+		d := finished{edits: edits}
+		if station.Guarded(func() error { d.img = r.draw(p, size.Dx(), size.Dy(), pixels, shown); return nil }) != nil {
+			d.img = nil // then it is drawn as it is painted, where a fault is told of
+		}
+		made <- d
 		post(e.frameMade) // the clock may be at rest by then; while it runs, the next step takes it sooner
 	}()
 	return true
@@ -101,6 +106,9 @@ func (e *editor) takeFrame() {
 	select {
 	case d := <-f.made:
 		f.made = nil
+		if d.img == nil {
+			f.reel = nil
+		}
 		if d.edits == f.edits {
 			f.shown = d.img
 			e.raster.Refresh()

@@ -42,7 +42,7 @@ func (e Edit) inWords(f *audit.File) string {
 	rest := e.Target[i+1:]
 	id, key, _ := strings.Cut(rest, ".")
 	switch e.act {
-	case hours, rewire:
+	case off, rewire:
 		return e.String()
 	case heat:
 		if k := audit.HeatKeyNamed(key); k != nil {

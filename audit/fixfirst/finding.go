@@ -95,7 +95,7 @@ type act int
 const (
 	set    act = iota // a value of a block or of the oil
 	lower             // the same, where it is not lower already
-	hours             // of a duty
+	off               // the hours of a duty become hours off
 	rewire            // a signal line to another port
 	heat              // what the section heat says of a circuit
 )
@@ -109,8 +109,8 @@ type Edit struct {
 // String writes the edit as the command line takes it, or in words where that cannot.
 func (e Edit) String() string {
 	switch e.act {
-	case hours:
-		return fmt.Sprintf("duty %q: hours %s", e.Target, e.Value)
+	case off:
+		return fmt.Sprintf("duty %q: its hours are hours off", e.Target)
 	case rewire:
 		return fmt.Sprintf("join %s to %s", e.Target, e.Value)
 	case heat:
@@ -122,7 +122,7 @@ func (e Edit) String() string {
 // apply makes the edit.
 func (e Edit) apply(f *audit.File) error {
 	switch e.act {
-	case hours:
+	case off:
 		return switchOff(f, e.Target)
 	case rewire:
 		name, port, _ := strings.Cut(e.Target, "/")

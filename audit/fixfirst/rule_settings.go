@@ -301,7 +301,7 @@ func runsIdle(p *plant) []*Finding {
 		f.Do = "Switch the motor off in breaks of 20 minutes and more, by hand or by a timer. Name somebody who does it. The oil cools slowly; a short warm-up is seldom needed."
 		f.Caution = "Stopped is not safe: loads, accumulators and trapped oil keep their energy. Let the restart be by hand, and keep below the starts an hour that the motor's maker allows."
 		f.Basis = "breaks of 20 min and more: trade literature; the price takes all of these hours, ask which of them are breaks so long"
-		f.Cures = []Cure{{{hours, d.Duty.Name, "0 h"}}}
+		f.Cures = []Cure{{{off, d.Duty.Name, ""}}}
 		out = append(out, f)
 	}
 	return out

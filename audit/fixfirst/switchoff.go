@@ -2,6 +2,7 @@ package fixfirst
 
 import (
 	"fmt"
+	"slices"
 
 	"barlitre/audit"
 	"barlitre/audit/calendar"
@@ -20,7 +21,7 @@ func switchOff(f *audit.File, duty string) error {
 	}
 	c := f.Calendar
 	if state != calendar.Idle || len(c.Uses[state]) != 1 || c.HoldTime.Share > 0 || c.Hours == nil {
-		return fmt.Errorf("the calendar does not tell which hours of %s could be off: it is not the only duty of idle, or hold is a share", duty)
+		return fmt.Errorf("the calendar does not tell which hours of %s could be off: that takes %s as the only duty of the state idle, and holding as hours, not as a share", duty, duty)
 	}
 	inShifts := c.Hours.Idle
 	if c.InBreaks == calendar.Idle {
@@ -34,7 +35,7 @@ func switchOff(f *audit.File, duty string) error {
 					}
 				}
 				if lasts < worthOff {
-					return fmt.Errorf("the calendar has breaks shorter than 20\u202fmin, in which the motor is not worth switching off, and does not part %s by them", duty)
+					return fmt.Errorf("some breaks are shorter than %g\u202fmin, too short to switch off, and the calendar does not say how much of %s falls in them", worthOff/units.Minute, duty)
 				}
 			}
 		}
@@ -45,7 +46,11 @@ func switchOff(f *audit.File, duty string) error {
 	if inShifts < 1 {
 		return nil
 	}
-	if err := f.SetStop("switched off while idle", fmt.Sprintf("%.9g h", inShifts/units.Hour)); err != nil {
+	name := "switched off while idle"
+	for n := 2; slices.ContainsFunc(c.Stops, func(s calendar.Stop) bool { return s.Name == name }); n++ {
+		name = fmt.Sprintf("switched off while idle %d", n)
+	}
+	if err := f.SetStop(name, fmt.Sprintf("%.9g h", inShifts/units.Hour)); err != nil {
 		return err
 	}
 	return f.SetCalendar("idle_time", "")

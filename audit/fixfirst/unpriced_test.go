@@ -56,3 +56,27 @@ func TestIdleByCalendar(t *testing.T) {
 		t.Errorf("%q: %g kWh, %g EUR, by hand %g kWh", x.Unpriced, x.Alone.Energy/units.KilowattHour, x.Alone.Money, want/units.KilowattHour)
 	}
 }
+
+// Hours that are off already under the same name stay off.
+func TestSwitchedOffAgain(t *testing.T) {
+	f := asFound(parse(t, sources(t)["handling-machine"]))
+	if err := f.SetStop("switched off while idle", "120 h"); err != nil {
+		t.Fatal(err)
+	}
+	l, err := fixfirst.All(context.Background(), solve(t, asFound(f)), fixfirst.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if f, err = fixfirst.Apply(f, l[0].Steps[0].Cure); err != nil {
+		t.Fatal(err)
+	}
+	kept := 0.0
+	for _, s := range f.Calendar.Stops {
+		if s.Name == "switched off while idle" {
+			kept = s.Hours
+		}
+	}
+	if math.Abs(kept-120*3600) > 1 {
+		t.Errorf("%g h of the 120 h are left: %+v", kept/3600, f.Calendar.Stops)
+	}
+}

@@ -7,7 +7,9 @@ import "math"
 // where nothing determines the unknowns. What it finds for each of the unknowns asked for
 // it puts into out; the solution and what the next Solve finds stay as they are.
 func (s *Solver) Response(p Problem, x []float64, of []int, out []float64) {
+	s.j.Tangent = true
 	s.norm(p, x, aim{}, true)
+	s.j.Tangent = false
 	if !s.plannedResponse(of, out) {
 		s.openResponse(x, of, out)
 	}

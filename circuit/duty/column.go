@@ -3,11 +3,14 @@ package duty
 import "math"
 
 // column is one track over the rows.
-type column struct{ t, v []float64 }
+type column struct {
+	t, v    []float64
+	derived bool // v was worked out for this once
+}
 
 func (d *Duty) column(of string, w What) *column {
 	if tr := d.Track(of, w); tr != nil {
-		return &column{d.Time, tr.Values}
+		return &column{t: d.Time, v: tr.Values}
 	}
 	return nil
 }
@@ -36,7 +39,7 @@ func (d *Duty) speedColumn(of string) *column {
 			v[i] = (p.v[b] - p.v[a]) / (p.t[b] - p.t[a])
 		}
 	}
-	return &column{p.t, v}
+	return &column{p.t, v, true}
 }
 
 func (c *column) top() float64 {
@@ -44,11 +47,13 @@ func (c *column) top() float64 {
 		return 0
 	}
 	m, ok := recall(c.v, largest)
-	if !ok {
+	if !ok { // a derived column is never met again
 		for _, v := range c.v {
 			m = math.Max(m, math.Abs(v))
 		}
-		keep(c.v, largest, m)
+		if !c.derived {
+			keep(c.v, largest, m)
+		}
 	}
 	return m
 }

@@ -71,7 +71,7 @@ type Series struct {
 func (d *Duty) Series(axes []Axis, inertia bool) *Series {
 	s := &Series{Repeats: d.Repeats, Duty: d, Commands: map[Control][]float64{}}
 	l := newLayout(d, axes, inertia)
-	columns := []*column{{d.Time, d.Time}}
+	columns := []*column{{t: d.Time, v: d.Time}}
 	var loads []*column
 	for i, a := range axes {
 		loads = append(loads, d.column(a.Name, Load))
@@ -81,7 +81,7 @@ func (d *Duty) Series(axes []Axis, inertia bool) *Series {
 	for _, tr := range d.Tracks {
 		if !slices.ContainsFunc(axes, func(a Axis) bool { return a.Name == tr.Of }) {
 			controls = append(controls, Control{tr.Of, tr.What})
-			columns = append(columns, &column{d.Time, tr.Values})
+			columns = append(columns, &column{t: d.Time, v: tr.Values})
 		}
 	}
 	laid := l.laid(columns)
