@@ -245,12 +245,17 @@ func (b *bench) click(sheet int, p fyne.Position, mod fyne.KeyModifier) {
 
 // drag drags on a sheet in steps.
 func (b *bench) drag(sheet int, from, to fyne.Position, button desktop.MouseButton, mod fyne.KeyModifier) {
+	b.drop(sheet, from, to, button, mod)
+	b.pump()
+}
+
+// drop is drag that leaves what follows from it to the caller.
+func (b *bench) drop(sheet int, from, to fyne.Position, button desktop.MouseButton, mod fyne.KeyModifier) {
 	e := b.s.editors[sheet]
 	e.MouseDown(event(from, button, mod))
 	b.dragOn(sheet, from, to)
 	e.MouseUp(event(to, button, mod))
 	e.DragEnd()
-	b.pump()
 }
 
 func (b *bench) dragOn(sheet int, from, to fyne.Position) {
