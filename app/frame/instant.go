@@ -62,7 +62,7 @@ func (f *Frame) find(of func(*audit.File) instant) {
 	go func() {
 		<-found
 		do(func() {
-			if !f.closed && f.gone == gone && f.sameDuty(file, to.duty) && arrive() {
+			if !f.closed && f.gone == gone && (fault != nil || f.sameDuty(file, to.duty)) && arrive() {
 				f.changed(station.Selection | station.Clock | station.Reading)
 			}
 		})

@@ -98,10 +98,15 @@ func (f *field) at(node int) Pt {
 	return Pt{float64(node%f.w + f.x0), float64(node/f.w + f.y0)}
 }
 
-// inner tells whether a place lies inside the rim of the grid.
-func (f *field) inner(p Pt) bool {
-	x, y := p.X-float64(f.x0), p.Y-float64(f.y0)
-	return x >= 1 && y >= 1 && x <= float64(f.w-2) && y <= float64(f.h-2)
+// inside is the part of an upright or level line that lies inside the rim; ok is false if none does.
+func (f *field) inside(g [2]Pt) (out [2]Pt, ok bool) {
+	left, top := float64(f.x0+1), float64(f.y0+1)
+	right, foot := float64(f.x0+f.w-2), float64(f.y0+f.h-2)
+	for i, p := range g {
+		out[i] = Pt{min(max(p.X, left), right), min(max(p.Y, top), foot)}
+	}
+	beside := g[0].X == g[1].X && out[0].X != g[0].X || g[0].Y == g[1].Y && out[0].Y != g[0].Y
+	return out, !beside
 }
 
 // edge is the number of the edge that leaves node in direction d.

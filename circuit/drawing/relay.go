@@ -58,7 +58,7 @@ func (f *field) branches(t *tree) []branch {
 // follow lists the nodes of a branch from one on that an edge leads to, and notes the edges.
 func (f *field) follow(t *tree, node, e int, seen map[int]bool) branch {
 	out := branch{node}
-	for on := f.onward(t, node, e); on >= 0; on = f.onward(t, node, on) {
+	for on := f.onward(t, node, e); on >= 0 && !seen[on]; on = f.onward(t, node, on) {
 		seen[on] = true
 		node = on/2 + on/2 + f.delta[on&1] - node
 		out = append(out, node)

@@ -136,7 +136,8 @@ func RouteSome(blocks []Box, nets []Net, laid []Route, lay map[int]bool) []Route
 func (f *field) treeOf(n Net, r Route) tree {
 	t := tree{has: map[int]bool{}, on: map[int]bool{}, ports: map[int]terminal{}, stiff: n.Type == Shaft || n.Type == Rod}
 	for _, g := range r.Segments {
-		if !f.inner(g[0]) || !f.inner(g[1]) {
+		g, ok := f.inside(g)
+		if !ok {
 			continue // beyond all that is there now
 		}
 		a, b := f.node(g[0]), f.node(g[1])
