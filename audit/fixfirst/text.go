@@ -129,12 +129,15 @@ func (w words) verdict(l *Ladder) string {
 	if faults == "" {
 		faults = fmt.Sprintf("%d faults were found", n)
 	}
-	habits := len(l.Steps) - n
-	switch {
+	join := ", and"
+	if n == 0 {
+		join = ", but"
+	}
+	switch habits := len(l.Steps) - n; {
 	case habits == 1:
-		faults += ", and one way of running it that costs money"
+		faults += join + " the way it is run costs money"
 	case habits > 1:
-		faults += fmt.Sprintf(", and %d ways of running it that cost money", habits)
+		faults += fmt.Sprintf("%s it is run in %d ways that cost money", join, habits)
 	}
 	if l.Lacks > leastLack {
 		return fmt.Sprintf("The circuit \"%s\" as it stands does not do its work: %s of motion a cycle are missing. %s. What the cures save cannot be compared, for the machine delivers less as it stands; put right in the order below it does that work and draws %s a year. That is the machine a proposal has to beat.",
