@@ -62,6 +62,10 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 	}
 }
 
+// farOff is a norm from which one step does not lead to a solution: its end is evaluated with slopes,
+// for the next.
+const farOff = 1e-3
+
 // lostShare is by how much the norm may grow in a step that no shortening helps; beyond it nothing
 // is found any more.
 const lostShare = 1e3
@@ -154,7 +158,7 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 			s.move(x, t)
 		}
 		gone = false
-		norm := s.norm(p, x, a, false)
+		norm := s.norm(p, x, a, k == 0 && before > farOff)
 		if norm < before || norm < s.recent() || norm == 0 {
 			return norm
 		}

@@ -1,13 +1,16 @@
 package balance
 
 // past foretells a solution from the last ones, by the polynomial (constant, line,
-// parabola, up to mostOrder) that would have foretold the last one best. It is a start
-// for Newton's method, nothing else: a poor one costs a step, never a result.
+// parabola, up to mostOrder) that would have foretold the last one best. After a corner in a
+// smooth way it is the one through all that came since. It is a start for Newton's method,
+// nothing else: a poor one costs a step, never a result.
 type past struct {
 	x     [mostOrder + 3][]float64 // two more than a start needs, to judge it; in turns
 	at    int                      // the last of them; those before come after it
 	count int
 	order int
+	since int // solutions since the last corner, with that on it
+	young int // while what came before the corner is of no use: how often yet it may have been none
 }
 
 const mostOrder = 5
@@ -28,7 +31,7 @@ func newPast(n int) (p past) {
 // before is the solution k before the last.
 func (p *past) before(k int) []float64 { return p.x[(p.at+k)&(len(p.x)-1)] }
 
-func (p *past) forget() { p.count, p.order = 0, 0 }
+func (p *past) forget() { p.count, p.order, p.since, p.young = 0, 0, 0, corners }
 
 // guess moves on the unknowns that stand where the last solution left them; the
 // others have been given a start by the caller. It reports whether it did.
@@ -67,12 +70,36 @@ func within(v, lo, hi float64) float64 {
 	return v
 }
 
-// keep takes a solution. At every sixteenth, and when the last start was poor, it finds
-// the order for the next.
-func (p *past) keep(x []float64, poor bool) {
+// A way is smooth after so many solutions that were foretold well: what is foretold badly then is a
+// corner, not noise. There are at most so many corners one after another.
+const (
+	smooth  = 8
+	corners = 3
+)
+
+// keep takes a solution, how many steps it took from its start, and whether what was foretold of it
+// was worse than to foretell nothing. It finds the order for the next.
+func (p *past) keep(x []float64, steps int, worse bool) {
 	p.at--
 	copy(p.before(0), x)
-	if p.count++; p.count > 2 && (poor || p.count&15 == 0) {
+	p.count++
+	p.since++
+	poor := steps > 2 || worse
+	switch {
+	case p.young == 0 && poor && p.order > 0 && p.since > smooth:
+		p.since, p.order, p.young = 2, 1, corners // the corner is the solution before
+	case p.young > 1 && worse: // it is this one
+		p.since, p.order = 1, 0
+		p.young--
+	case p.young > 0 && !worse:
+		p.order = min(p.since-1, mostOrder)
+		if p.since >= smooth {
+			p.young = 0
+		}
+	case poor || p.count&15 == 0 || steps > 1 && p.count&3 == 0:
+		if poor {
+			p.since, p.young = 0, 0
+		}
 		p.choose()
 	}
 }

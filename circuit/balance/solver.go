@@ -81,7 +81,11 @@ type Solver struct {
 	now             point
 	plans           plans
 	past            past
-	far             bool // the step in dx may have to be shortened
+	far             bool     // the step in dx may have to be shortened
+	of              struct { // a guess: what its evaluation left
+		g, r []float64
+		key  []uint64
+	}
 }
 
 // point tells what the workspace holds.
@@ -93,9 +97,10 @@ type point struct {
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
 	s := &Solver{n: n, maker: newPlanner(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
-	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep} {
+	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep, &s.of.g, &s.of.r} {
 		*p = make([]float64, n)
 	}
+	s.of.key = make([]uint64, len(s.plans.key))
 	s.Border(0)
 	s.Reset()
 	return s
@@ -141,9 +146,11 @@ func (s *Solver) Row(i int) float64 { return s.g[i] }
 func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, x []float64)) Result {
 	copy(s.start, x)
 	foretold := s.Foretell && s.past.guess(x, s.Lo, s.Hi)
+	worse := false
 	s.norm(p, x, aim{}, true)
 	if foretold && s.now.norm > poorGuess {
 		foretold = s.keepGuess(p, x)
+		worse = !foretold
 	}
 	ok, it := s.iterate(p, x, aim{}, warmSteps)
 	if !ok && foretold {
@@ -153,7 +160,7 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 		it += more
 	}
 	if ok {
-		s.past.keep(x, it > 2)
+		s.past.keep(x, it, worse)
 		return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
 	}
 	s.past.forget()
@@ -169,17 +176,24 @@ const (
 	warmSteps = 15
 )
 
-// keepGuess goes back to the start from a guess that leaves more than the start does, and reports
-// whether it stays with the guess.
+// keepGuess goes back to the start from a guess that does not leave much less than the start does,
+// and reports whether it stays with the guess.
 func (s *Solver) keepGuess(p Problem, x []float64) bool {
-	guessed := s.now.norm
+	guessed := s.now
 	copy(s.best, x)
+	copy(s.of.g, s.g)
+	copy(s.of.r, s.r)
+	copy(s.of.key, s.plans.key)
 	copy(x, s.start)
-	if s.norm(p, x, aim{}, true) < guessed {
+	if s.norm(p, x, aim{}, false) < 2*guessed.norm {
+		s.norm(p, x, aim{}, true)
 		return false
 	}
-	copy(x, s.best)
-	s.norm(p, x, aim{}, true)
+	copy(x, s.best) // the slopes are still the guess's
+	copy(s.g, s.of.g)
+	copy(s.r, s.of.r)
+	copy(s.plans.key, s.of.key)
+	s.now = guessed
 	return true
 }
 

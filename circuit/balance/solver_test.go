@@ -107,7 +107,7 @@ func TestForetoldPolynomial(t *testing.T) {
 		f := func(t float64) float64 { return 1 + math.Pow(t/3-1, float64(order)) }
 		p := newPast(1)
 		for k := range 20 {
-			p.keep([]float64{f(float64(k))}, true)
+			p.keep([]float64{f(float64(k))}, 3, true)
 		}
 		p.order = max(order, 1) // a line foretells a constant too; order 0 leaves the start alone
 		x := []float64{f(19)}
@@ -120,13 +120,39 @@ func TestForetoldPolynomial(t *testing.T) {
 	}
 }
 
+// After a corner in a smooth way only what came since is extrapolated: a parabola is foretold
+// exactly from its third point on.
+func TestForetoldCorner(t *testing.T) {
+	f := func(k int) float64 {
+		if k <= 40 {
+			return math.Sin(0.1 * float64(k))
+		}
+		s := float64(k - 40)
+		return math.Sin(4) + 0.7*s - 0.03*s*s
+	}
+	p := newPast(1)
+	for k := range 60 {
+		x := []float64{f(k - 1)}
+		p.guess(x, []float64{-inf()}, []float64{inf()})
+		missed := math.Abs(x[0] - f(k))
+		if k > 42 && missed > 1e-12 {
+			t.Errorf("%d points after the corner the parabola is missed by %g", k-40, missed)
+		}
+		steps := 1
+		if missed > 1e-2 {
+			steps = 3
+		}
+		p.keep([]float64{f(k)}, steps, false)
+	}
+}
+
 // The order is the lowest that serves: noise is not extrapolated.
 func TestForetoldOrder(t *testing.T) {
 	smooth, noisy, state := newPast(1), newPast(1), uint64(1)
 	for k := range 200 {
 		state = state*6364136223846793005 + 1442695040888963407
-		smooth.keep([]float64{math.Sin(0.1 * float64(k))}, true)
-		noisy.keep([]float64{float64(int64(state>>11)) / float64(1<<52)}, true)
+		smooth.keep([]float64{math.Sin(0.1 * float64(k))}, 3, true)
+		noisy.keep([]float64{float64(int64(state>>11)) / float64(1<<52)}, 3, true)
 		if k > 10 && noisy.order > 2 {
 			t.Fatalf("order %d for noise", noisy.order)
 		}
