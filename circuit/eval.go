@@ -40,17 +40,22 @@ type eval struct {
 	all    []float64 // known numbers, then unknowns
 	rows   []float64 // what leaves the known nodes, then the rows
 	known  slot
+	x, out balance.Vector  // all and rows, by slots
 	slopes *balance.Slopes // nil where no slopes are wanted
 	steady *balance.Slopes // nil where those that stay as they are are known
 }
 
-func (e *eval) val(s slot) float64 { return e.all[s+e.known] }
+func newEval(all, rows []float64, known int) eval {
+	return eval{all: all, rows: rows, known: slot(known), x: balance.VectorOf(all, known), out: balance.VectorOf(rows, known)}
+}
+
+func (e *eval) val(s slot) float64 { return e.x.At(int(s)) }
 
 // row returns the row of s: of a known node, the flow that leaves it.
-func (e *eval) row(s slot) float64 { return e.rows[s+e.known] }
+func (e *eval) row(s slot) float64 { return e.out.At(int(s)) }
 
 // add adds v to the row of s.
-func (e *eval) add(s slot, v float64) { e.rows[s+e.known] += v }
+func (e *eval) add(s slot, v float64) { e.out.Add(int(s), v) }
 
 // d adds the derivative of row r by unknown c.
 func (e *eval) d(r, c slot, v float64) {
@@ -71,9 +76,9 @@ func (e *eval) plain() bool { return e.slopes == nil }
 
 // branch adds the flow unknown q from node a to node b, always the same ones but for step.changes.
 func (e *eval) branch(a, b, q slot) float64 {
-	v, rows, known := e.val(q), e.rows, e.known
-	rows[a+known] += v
-	rows[b+known] -= v
+	v := e.val(q)
+	e.add(a, v)
+	e.add(b, -v)
 	if e.steady != nil {
 		e.same(a, q, 1)
 		e.same(b, q, -1)
@@ -84,8 +89,7 @@ func (e *eval) branch(a, b, q slot) float64 {
 // drop adds the row of the flow unknown q between a and b: r(q) − (pa − pb),
 // where r and its slope dr are the pressure drop at q. Nodes are as those of branch.
 func (e *eval) drop(a, b, q slot, r, dr float64) {
-	all, known := e.all, e.known
-	e.rows[q+known] += r + minResistance*all[q+known] - (all[a+known] - all[b+known])
+	e.add(q, r+minResistance*e.val(q)-(e.val(a)-e.val(b)))
 	e.d(q, q, dr+minResistance)
 	if e.steady != nil {
 		e.same(q, a, -1)
@@ -95,10 +99,9 @@ func (e *eval) drop(a, b, q slot, r, dr float64) {
 
 // conduct adds the linear flow k·(pa − pb) from a to b, with the same k but for step.changes.
 func (e *eval) conduct(a, b slot, k float64) {
-	all, rows, known := e.all, e.rows, e.known
-	q := k * (all[a+known] - all[b+known])
-	rows[a+known] += q
-	rows[b+known] -= q
+	q := k * (e.val(a) - e.val(b))
+	e.add(a, q)
+	e.add(b, -q)
 	if e.steady != nil {
 		e.same(a, a, k)
 		e.same(a, b, -k)
@@ -122,7 +125,7 @@ func (e *eval) pass(a, b slot, q, k float64) {
 // hot is what every step of a run needs, sorted out once.
 type hot struct {
 	found      []foundNode
-	leaking    []int32 // these, as places in the vectors of eval
+	leaking    []int32 // their slots
 	free       []shaft
 	gears      []*gearboxModel
 	onShafts   []shaftBooker
@@ -167,7 +170,7 @@ func (r *run) sort() {
 	for i, n := range r.nodes {
 		if n.slot >= 0 && !n.pilot {
 			r.found = append(r.found, foundNode{i, n.slot})
-			r.leaking = append(r.leaking, int32(n.slot+r.ev.known))
+			r.leaking = append(r.leaking, int32(n.slot))
 		}
 	}
 	for _, s := range r.shafts {
@@ -219,10 +222,9 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 // leaks sets the rows of nodes to what ties them to tank, and adds what ties them to
 // what a held load asks for.
 func (r *run) leaks(e *eval) {
-	leak, all := r.leak, e.all
-	rows := e.rows[:len(all)]
+	leak := r.leak
 	for _, i := range r.leaking {
-		rows[i] = leak * all[i]
+		e.out.Put(int(i), leak*e.x.At(int(i)))
 	}
 	if e.steady != nil {
 		for _, at := range r.found {
@@ -364,7 +366,7 @@ func (s *step) set(u slot, v float64) {
 	if u >= 0 {
 		s.solver.Lo[u], s.solver.Hi[u] = v, v
 	}
-	s.now.all[u+s.now.known] = v
+	s.now.x.Put(int(u), v)
 }
 
 func (s *step) val(u slot) float64 { return s.now.val(u) }

@@ -85,7 +85,7 @@ type run struct {
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
 	r := &run{Compiled: c, solver: c.newSolver(), series: s, params: params, leak: leak}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
-	r.ev = eval{known: slot(c.nfix), all: make([]float64, c.nfix+c.n), rows: r.solver.Border(c.nfix)}
+	r.ev = newEval(make([]float64, c.nfix+c.n), r.solver.Border(c.nfix), c.nfix)
 	r.step = step{axes: make([]axisStep, len(c.axes)), atRest: c.circuit.PumpAtRest, solver: r.solver,
 		x: r.ev.all[c.nfix:], now: &r.ev, rest: make([]float64, c.n), restK: make([]float64, c.n), pScale: r.scales.p}
 	for i := range r.rows {
@@ -326,9 +326,9 @@ func (r *run) bookAll() {
 	for _, c := range r.converters {
 		c.bookSupply(b)
 	}
-	sig, all, unit := b.sig, b.all, b.scales.p
+	sig, unit := b.sig, b.scales.p
 	for _, p := range r.portP {
-		sig[p.signal] = all[p.node+b.known] * unit
+		sig[p.signal] = b.val(p.node) * unit
 	}
 	if len(r.slowly) > 0 {
 		copy(b.next, r.state.slow)

@@ -79,12 +79,11 @@ func (t *throat) steer(q, r, dp, tangent, least float64) float64 {
 // throttle adds the flow unknown q through a throat from a to b, and its row: Δp(q) = pa − pb − opens,
 // with q >= least by its bounds. Nodes are as those of branch.
 func (e *eval) throttle(a, b, q slot, t *throat, opens, least float64) {
-	all, rows, known := e.all, e.rows, e.known
-	v, dp := all[q+known], all[a+known]-all[b+known]
+	v, dp := e.val(q), e.val(a)-e.val(b)
 	r, dr := t.at(v)
-	rows[a+known] += v
-	rows[b+known] -= v
-	rows[q+known] += opens + r + minResistance*v - dp
+	e.add(a, v)
+	e.add(b, -v)
+	e.add(q, opens+r+minResistance*v-dp)
 	if e.slopes == nil {
 		return
 	}

@@ -51,26 +51,26 @@ func (p *plan) run(n int, val, work []float64) bool {
 	work = work[:p.size]
 	entries := work[2*n:]
 	clear(entries[copy(entries, val[:p.entries]):])
-	code, at := p.pivots, 0
+	w, code, at := VectorOf(work, 0), codesOf(p.pivots), 0
 	for _, least := range p.least {
-		pivot, row := code[at], code[at+1]
+		pivot, row := code.at(at), code.at(at+1)
 		at += 2
-		v := work[pivot.a()]
+		v := w.At(pivot.a())
 		if !(v >= least || v <= -least) {
 			return false
 		}
 		v = 1 / v
-		work[pivot.a()] = v
-		r := work[row.a()]
+		w.Put(pivot.a(), v)
+		r := w.At(row.a())
 		for more := pivot.b(); more > 0; more-- {
-			below := code[at]
+			below := code.at(at)
 			at++
-			m := work[below.a()] * v
-			work[below.a()] = m
-			work[below.b()] -= m * r
+			m := w.At(below.a()) * v
+			w.Put(below.a(), m)
+			w.Add(below.b(), -(m * r))
 			for end := at + row.b(); at < end; at++ {
-				u := code[at]
-				work[u.a()] -= m * work[u.b()]
+				u := code.at(at)
+				w.Add(u.a(), -(m * w.At(u.b())))
 			}
 		}
 	}
@@ -97,14 +97,15 @@ func (p *plan) solve(val, work []float64, moved bool) {
 	if moved {
 		p.tie(val, work)
 	}
-	for code, at := p.pivots, 0; at+1 < len(code); {
-		pivot, row := code[at], code[at+1]
+	w, code := VectorOf(work[:p.size], 0), codesOf(p.pivots)
+	for at, end := 0, len(p.pivots); at < end; {
+		pivot, row := code.at(at), code.at(at+1)
 		at += 2
-		r := work[row.a()]
+		r := w.At(row.a())
 		for more := pivot.b(); more > 0; more-- {
-			below := code[at]
+			below := code.at(at)
 			at += 1 + row.b()
-			work[below.b()] -= work[below.a()] * r
+			w.Add(below.b(), -(w.At(below.a()) * r))
 		}
 	}
 	p.backward(work)
@@ -119,15 +120,15 @@ func (p *plan) tie(val, work []float64) {
 
 // backward turns the residual that was carried along into the step behind it.
 func (p *plan) backward(work []float64) {
-	work = work[:p.size]
-	for code, at := p.back, 0; at+1 < len(code); {
-		to, pivot := code[at], code[at+1]
+	w, code := VectorOf(work[:p.size], 0), codesOf(p.back)
+	for at, last := 0, len(p.back); at < last; {
+		to, pivot := code.at(at), code.at(at+1)
 		at += 2
-		sum := work[to.a()]
+		sum := w.At(to.a())
 		for end := at + pivot.b(); at < end; at++ {
-			e := code[at]
-			sum += work[e.a()] * work[e.b()]
+			e := code.at(at)
+			sum += w.At(e.a()) * w.At(e.b())
 		}
-		work[to.b()] = -sum * work[pivot.a()]
+		w.Put(to.b(), -sum*w.At(pivot.a()))
 	}
 }
