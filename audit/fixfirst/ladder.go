@@ -309,6 +309,17 @@ func (l *Ladder) unpriced(c Class) bool {
 	return !l.priced(c) && slices.ContainsFunc(l.Steps, func(x *Step) bool { return c == "" || x.Class == c })
 }
 
+// withoutPrice is how many steps have no price.
+func (l *Ladder) withoutPrice() int {
+	n := 0
+	for _, x := range l.Steps {
+		if x.Unpriced != "" {
+			n++
+		}
+	}
+	return n
+}
+
 // Total is what all priced cures save together.
 func (l *Ladder) Total() Saving {
 	var sum Saving

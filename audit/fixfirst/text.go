@@ -150,8 +150,15 @@ func (w words) verdict(l *Ladder) string {
 	if l.AsFound.Drawn > 0 {
 		share = ", " + units.Format(total.Energy/l.AsFound.Drawn, units.Percent, 3)
 	}
-	return fmt.Sprintf("%s. Put right in the order below, the circuit \"%s\" would draw %s a year in place of %s: %s less%s. That is the machine a proposal has to beat.",
-		faults, l.Circuit, w.energy(l.Cured.Drawn), w.energy(l.AsFound.Drawn), w.both(total), share)
+	left := ""
+	switch n := l.withoutPrice(); {
+	case n == 1:
+		left = " What one of them would save is not known and not counted; why stands with it below."
+	case n > 1:
+		left = fmt.Sprintf(" What %d of them would save is not known and not counted; why stands with each below.", n)
+	}
+	return fmt.Sprintf("%s. Put right in the order below, the circuit \"%s\" would draw %s a year in place of %s: %s less%s.%s That is the machine a proposal has to beat.",
+		faults, l.Circuit, w.energy(l.Cured.Drawn), w.energy(l.AsFound.Drawn), w.both(total), share, left)
 }
 
 func (w words) ladder(l *Ladder) []Row {
@@ -167,7 +174,7 @@ func (w words) ladder(l *Ladder) []Row {
 		rows = append(rows, r)
 	}
 	if len(l.Steps) > 0 {
-		r := Row{Name: "all, in order", Sum: true, Cells: []audit.Figure{{}, {}, {}}}
+		r := Row{Name: l.sumName(), Sum: true, Cells: []audit.Figure{{}, {}, {}}}
 		all := w.figures("all, in order", l.Total(), l.AsFound, l.Cured, l.Edits.String())
 		if l.Lacks > leastLack {
 			all = notCompared()
@@ -177,6 +184,14 @@ func (w words) ladder(l *Ladder) []Row {
 		rows = append(rows, Row{r.Name, append(r.Cells, all...), true})
 	}
 	return rows
+}
+
+// sumName names the sum of what the steps save, which counts only those with a price.
+func (l *Ladder) sumName() string {
+	if n := l.withoutPrice(); n > 0 && n < len(l.Steps) {
+		return "all with a price, in order"
+	}
+	return "all, in order"
 }
 
 // notCompared stands for a saving between a machine that does its work and one that does not.

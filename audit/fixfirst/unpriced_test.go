@@ -34,6 +34,32 @@ func TestUnpricedIsNotZero(t *testing.T) {
 	}
 }
 
+// Where some have a price and others none, the sum says that it is of those with a price.
+func TestPricedInPart(t *testing.T) {
+	w := twin{of: "handling-machine", set: []string{"As found/P1.margin=45 bar"}}
+	f := asFound(w.file(t, sources(t)))
+	if err := f.SetShift(0, "breaks", "09:30 - 09:45"); err != nil {
+		t.Fatal(err)
+	}
+	l, err := fixfirst.All(context.Background(), solve(t, asFound(f)), fixfirst.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	none := 0
+	for _, x := range l[0].Steps {
+		if x.Unpriced != "" {
+			none++
+		}
+	}
+	p := l[0].Page(units.Metric)
+	if none != 1 || len(l[0].Steps) < 2 || !strings.Contains(p.Verdict, "What one of them would save is not known and not counted") {
+		t.Errorf("%d of %d without a price: %s", none, len(l[0].Steps), p.Verdict)
+	}
+	if sum := p.Rows[len(p.Rows)-1]; sum.Name != "all with a price, in order" {
+		t.Error(sum.Name)
+	}
+}
+
 // By the calendar the hours of waiting become hours off: by hand, what waiting draws less the standby over its 1200 h
 // (750 h within shifts, and 0.5 h of break in 3 shifts on 6 days of 50 weeks).
 func TestIdleByCalendar(t *testing.T) {
