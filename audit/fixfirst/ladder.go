@@ -238,6 +238,9 @@ func (l *Ladder) split(c *audit.Comparison, base, cured outcome) Split {
 		y := c.Proposal.Year
 		if i := slices.IndexFunc(y.Duties, func(d audit.YearDuty) bool { return d.Duty == x.Duty }); i >= 0 && y.Drawn.Total() > 0 {
 			e := y.Duties[i].Drawn
+			if y.Duties[i].State != "" { // by the calendar these hours become hours off
+				e = max(0, e-y.Standby*y.Duties[i].Hours)
+			}
 			s.Besides.Energy += e
 			s.Besides.Money += p.money * e / y.Drawn.Total()
 			s.Besides.CO2 += p.co2 * e / y.Drawn.Total()

@@ -83,6 +83,21 @@ func TestIdleByCalendar(t *testing.T) {
 	}
 }
 
+// Switched off in the same hours a proposal draws the standby of its circuit in them, too: by hand, the mean of its waiting less
+// the 60 W, over the 1200 h.
+func TestProposalOffBesides(t *testing.T) {
+	s := solve(t, parse(t, sources(t)["handling-machine"]))
+	l, err := fixfirst.All(context.Background(), s, fixfirst.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	waiting := s.Circuits[1].Duties[1]
+	want := 1200 * units.Hour * (waiting.Balance.SupplyIn.Total()/waiting.Balance.Cycle - 60)
+	if got := l[0].Splits[0].Besides.Energy; want <= 0 || !near(got, want, want) {
+		t.Errorf("%g kWh less besides, by hand %g", got/units.KilowattHour, want/units.KilowattHour)
+	}
+}
+
 // Hours that are off already under the same name stay off.
 func TestSwitchedOffAgain(t *testing.T) {
 	f := asFound(parse(t, sources(t)["handling-machine"]))
