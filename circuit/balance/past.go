@@ -70,6 +70,12 @@ func within(v, lo, hi float64) float64 {
 	return v
 }
 
+// begin takes the first solution of another way.
+func (p *past) begin(x []float64) {
+	p.forget()
+	p.keep(x, 0, false)
+}
+
 // A way is smooth after so many solutions that were foretold well: what is foretold badly then is a
 // corner, not noise. There are at most so many corners one after another.
 const (

@@ -166,7 +166,11 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 	s.past.forget()
 	s.j.Tangent = true
 	defer func() { s.j.Tangent = false }()
-	return s.ladder(p, x, it, levels, cold)
+	res := s.ladder(p, x, it, levels, cold)
+	if res.Solved() {
+		s.past.begin(x)
+	}
+	return res
 }
 
 // A guess that leaves more than poorGuess is weighed against where it started; warmSteps bounds
@@ -261,7 +265,23 @@ func (s *Solver) smooth(p Problem, x []float64, maxIt int) (bool, int) {
 		return false, it
 	}
 	ok, more := s.newton(p, x, 8)
+	if ok && more == 0 {
+		s.polish(p, x)
+	}
 	return ok, it + more
+}
+
+// polish takes one more step of Newton's method from a solution that another form has found near enough,
+// and back if that leaves more: it makes bounds and linear rows exact.
+func (s *Solver) polish(p Problem, x []float64) {
+	before := s.now.norm
+	if before == 0 || !s.planned(x, aim{}) || s.far {
+		return
+	}
+	if !(s.norm(p, x, aim{}, false) <= before) {
+		copy(x, s.xt)
+		s.norm(p, x, aim{}, false)
+	}
 }
 
 // eased solves milder problems first, each from the one before. Of what rescues a
