@@ -85,7 +85,7 @@ type run struct {
 func newRun(c *Compiled, params []float64, cond Conditions, s *duty.Series) *run {
 	r := &run{Compiled: c, solver: c.newSolver(), series: s, params: params, leak: leak}
 	r.scales = scales{p: pressureScale, q: c.flowScale(params)}
-	r.ev = newEval(make([]float64, c.nfix+c.n), r.solver.Border(c.nfix), c.nfix)
+	r.ev = newEval(make([]float64, c.nfix+c.n, c.nfix+c.n+1), r.solver.Border(c.nfix), c.nfix)
 	r.step = step{axes: make([]axisStep, len(c.axes)), atRest: c.circuit.PumpAtRest, solver: r.solver,
 		x: r.ev.all[c.nfix:], now: &r.ev, rest: make([]float64, c.n), restK: make([]float64, c.n), pScale: r.scales.p}
 	for i := range r.rows {

@@ -43,7 +43,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			return false, it
 		}
 		if !s.now.slopes {
-			if left := norm * norm / before; planned && !repeated && 4*left <= tol && s.again(p, x, norm) {
+			if left := norm * norm / before; planned && !repeated && !s.halved && 4*left <= tol && s.again(p, x, norm) {
 				norm, before, repeated = s.now.norm, norm, true
 				continue
 			}
@@ -71,7 +71,7 @@ const farOff = 1e-3
 const lostShare = 1e3
 
 // again takes another step with the factors of the point before, whose slopes
-// are near enough when the last step went far. It leaves x as it is when that
+// are near enough when the last step went far and whole. It leaves x as it is when that
 // does not help.
 func (s *Solver) again(p Problem, x []float64, norm float64) bool {
 	if !s.plans.last.met(s.plans.key) {
@@ -153,6 +153,7 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 		copy(s.xt, x[:s.n])
 	}
 	bestNorm, bestT := math.Inf(1), t
+	s.halved = false
 	for k := 0; k <= 8; k++ {
 		if !gone {
 			s.move(x, t)
@@ -166,16 +167,18 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 			planned = false
 			copy(x, s.xt)
 			s.norm(p, x, a, true)
-			if s.direction(x, a) {
-				copy(s.xt, x[:s.n])
-				t, k = s.reach(x), -1
-				continue
+			if !s.direction(x, a) { // nowhere to go
+				return math.Inf(1)
 			}
+			copy(s.xt, x[:s.n])
+			t, k = s.reach(x), -1
+			continue
 		}
 		if norm < bestNorm {
 			bestNorm, bestT = norm, t
 		}
 		t /= 2
+		s.halved = true
 	}
 	s.move(x, bestT)
 	return s.norm(p, x, a, true)

@@ -5,12 +5,12 @@ package balance
 // smooth way it is the one through all that came since. It is a start for Newton's method,
 // nothing else: a poor one costs a step, never a result.
 type past struct {
-	x     [mostOrder + 3][]float64 // two more than a start needs, to judge it; in turns
-	at    int                      // the last of them; those before come after it
-	count int
-	order int
-	since int // solutions since the last corner, with that on it
-	young int // while what came before the corner is of no use: how often yet it may have been none
+	x       [mostOrder + 3][]float64 // two more than a start needs, to judge it; in turns
+	at      int                      // the last of them; those before come after it
+	count   int
+	order   int
+	since   int // solutions since the last corner, that on it counted, or since the way was rough
+	corners int // that may follow yet; 0 once the way since the last one has proved smooth or rough
 }
 
 const mostOrder = 5
@@ -31,7 +31,7 @@ func newPast(n int) (p past) {
 // before is the solution k before the last.
 func (p *past) before(k int) []float64 { return p.x[(p.at+k)&(len(p.x)-1)] }
 
-func (p *past) forget() { p.count, p.order, p.since, p.young = 0, 0, 0, corners }
+func (p *past) forget() { p.count, p.order, p.since, p.corners = 0, 0, 0, mostCorners }
 
 // guess moves on the unknowns that stand where the last solution left them; the
 // others have been given a start by the caller. It reports whether it did.
@@ -79,12 +79,12 @@ func (p *past) begin(x []float64) {
 // A way is smooth after so many solutions that were foretold well: what is foretold badly then is a
 // corner, not noise. There are at most so many corners one after another.
 const (
-	smooth  = 8
-	corners = 3
+	smoothSince = 8
+	mostCorners = 3
 )
 
 // keep takes a solution, how many steps it took from its start, and whether what was foretold of it
-// was worse than to foretell nothing. It finds the order for the next.
+// was hardly better than to foretell nothing. It finds the order for the next.
 func (p *past) keep(x []float64, steps int, worse bool) {
 	p.at--
 	copy(p.before(0), x)
@@ -92,19 +92,19 @@ func (p *past) keep(x []float64, steps int, worse bool) {
 	p.since++
 	poor := steps > 2 || worse
 	switch {
-	case p.young == 0 && poor && p.order > 0 && p.since > smooth:
-		p.since, p.order, p.young = 2, 1, corners // the corner is the solution before
-	case p.young > 1 && worse: // it is this one
+	case p.corners == 0 && poor && p.order > 0 && p.since > smoothSince:
+		p.since, p.order, p.corners = 2, 1, mostCorners // the corner is the solution before
+	case p.corners > 1 && worse: // it is this one
 		p.since, p.order = 1, 0
-		p.young--
-	case p.young > 0 && !worse:
+		p.corners--
+	case p.corners > 0 && !worse && (!poor || p.since <= 3):
 		p.order = min(p.since-1, mostOrder)
-		if p.since >= smooth {
-			p.young = 0
+		if p.since >= smoothSince {
+			p.corners = 0
 		}
 	case poor || p.count&15 == 0 || steps > 1 && p.count&3 == 0:
 		if poor {
-			p.since, p.young = 0, 0
+			p.since, p.corners = 0, 0
 		}
 		p.choose()
 	}

@@ -82,7 +82,8 @@ type Solver struct {
 	plans           plans
 	past            past
 	far             bool     // the step in dx may have to be shortened
-	of              struct { // a guess: what its evaluation left
+	halved          bool     // the last step was
+	guessed         struct { // what the evaluation of a guess left; the guess itself is in best
 		g, r []float64
 		key  []uint64
 	}
@@ -97,10 +98,10 @@ type point struct {
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
 	s := &Solver{n: n, maker: newPlanner(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
-	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep, &s.of.g, &s.of.r} {
+	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep, &s.guessed.g, &s.guessed.r} {
 		*p = make([]float64, n)
 	}
-	s.of.key = make([]uint64, len(s.plans.key))
+	s.guessed.key = make([]uint64, len(s.plans.key))
 	s.Border(0)
 	s.Reset()
 	return s
@@ -124,7 +125,7 @@ func (s *Solver) Reset() {
 func (s *Solver) Border(known int) []float64 {
 	if s.rows == nil || known != s.j.known {
 		s.j.border(known)
-		s.rows = make([]float64, known+s.n)
+		s.rows = make([]float64, known+s.n, known+s.n+1) // room for place 0, if there are no unknowns
 		s.g = s.rows[known:]
 	}
 	return s.rows
@@ -154,13 +155,18 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 	}
 	ok, it := s.iterate(p, x, aim{}, warmSteps)
 	if !ok && foretold {
+		worse = true
 		copy(x, s.start)
 		more := 0
 		ok, more = s.newton(p, x, warmSteps)
 		it += more
 	}
 	if ok {
-		s.past.keep(x, it, worse)
+		if s.Foretell {
+			s.past.keep(x, it, worse)
+		} else {
+			s.past.begin(x)
+		}
 		return Result{Rung: Warm, Iterations: it, Norm: s.now.norm}
 	}
 	s.past.forget()
@@ -185,18 +191,18 @@ const (
 func (s *Solver) keepGuess(p Problem, x []float64) bool {
 	guessed := s.now
 	copy(s.best, x)
-	copy(s.of.g, s.g)
-	copy(s.of.r, s.r)
-	copy(s.of.key, s.plans.key)
+	copy(s.guessed.g, s.g)
+	copy(s.guessed.r, s.r)
+	copy(s.guessed.key, s.plans.key)
 	copy(x, s.start)
 	if s.norm(p, x, aim{}, false) < 2*guessed.norm {
 		s.norm(p, x, aim{}, true)
 		return false
 	}
 	copy(x, s.best) // the slopes are still the guess's
-	copy(s.g, s.of.g)
-	copy(s.r, s.of.r)
-	copy(s.plans.key, s.of.key)
+	copy(s.g, s.guessed.g)
+	copy(s.r, s.guessed.r)
+	copy(s.plans.key, s.guessed.key)
 	s.now = guessed
 	return true
 }

@@ -9,13 +9,11 @@ import "unsafe"
 // tag checked, or for the race detector, it looks.
 type Vector struct{ first unsafe.Pointer }
 
-// VectorOf returns v with place 0 at v[zero]; those before it have negative places.
+// VectorOf returns v with place 0 at v[zero]; those before it have negative places. Where there are
+// none from 0 up, v must have room for one more.
 func VectorOf(v []float64, zero int) Vector {
-	if zero < 0 || zero > len(v) {
+	if zero < 0 || zero > len(v) || zero > 0 && zero == cap(v) {
 		panic("balance: place 0 of a vector lies outside of it")
-	}
-	if zero == len(v) { // there is none
-		return Vector{}
 	}
 	return Vector{unsafe.Add(unsafe.Pointer(unsafe.SliceData(v)), zero*8)}
 }

@@ -12,7 +12,12 @@ func TestVector(t *testing.T) {
 	if all[0] != 10 || all[4] != 5.5 || v.At(0) != 3 || v.At(-1) != 2 {
 		t.Errorf("%v, place 0 holds %g", all, v.At(0))
 	}
-	for _, zero := range []int{-1, 6} {
+	none := VectorOf(make([]float64, 2, 3), 2) // no unknowns, but known numbers before them
+	none.Put(-2, 7)
+	if v := none.At(-2); v != 7 {
+		t.Errorf("place -2 holds %g", v)
+	}
+	for _, zero := range []int{-1, 5, 6} {
 		func() {
 			defer func() {
 				if recover() == nil {
