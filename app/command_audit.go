@@ -18,6 +18,7 @@ import (
 	"barlitre/audit/fixfirst"
 	"barlitre/audit/pdf"
 	"barlitre/audit/sitecheck"
+	"barlitre/audit/whole"
 	"barlitre/circuit"
 	"barlitre/machines/units"
 )
@@ -100,9 +101,27 @@ func worse(a, b int) int {
 	return exitOK
 }
 
+// solve solves one file, and puts its tables in place once all are whole: until then those of an earlier call stay.
+func (c *auditCall) solve(ctx context.Context, path string, errs io.Writer) (*audit.Solution, int) {
+	if c.csv == "" {
+		return solveFile(ctx, "audit", path, c.set, audit.Options{}, errs)
+	}
+	tables := c.tables(path)
+	defer tables.Close()
+	s, code := solveFile(ctx, "audit", path, c.set, audit.Options{CSV: tables.Create}, errs)
+	if s == nil {
+		return nil, code
+	}
+	if err := tables.Place(""); err != nil {
+		fmt.Fprintln(errs, "barlitre audit: tables:", err)
+		return nil, exitUnreadable
+	}
+	return s, code
+}
+
 // one audits one file.
 func (c *auditCall) one(ctx context.Context, path string, text, errs io.Writer) (*audit.Result, int) {
-	s, code := solveFile(ctx, "audit", path, c.set, audit.Options{CSV: c.csvFiles(path)}, errs)
+	s, code := c.solve(ctx, path, errs)
 	if s == nil {
 		return nil, code
 	}
@@ -207,21 +226,13 @@ func (c *auditCall) writeRequest(path string, s *audit.Solution, text io.Writer)
 	return err
 }
 
-// csvFiles opens the tables of one audit file, in a folder of its own where there are several.
-func (c *auditCall) csvFiles(path string) func(string) (io.WriteCloser, error) {
-	if c.csv == "" {
-		return nil
-	}
+// tables collects the tables of one audit file, in a folder of its own where there are several.
+func (c *auditCall) tables(path string) *whole.Folder {
 	dir := c.csv
 	if c.several() {
 		dir = filepath.Join(dir, baseName(path))
 	}
-	return func(name string) (io.WriteCloser, error) {
-		if err := os.MkdirAll(dir, 0o755); err != nil {
-			return nil, err
-		}
-		return os.Create(filepath.Join(dir, name))
-	}
+	return whole.NewFolder(dir)
 }
 
 // writeJSON writes one result, or a list of them when there are several files.

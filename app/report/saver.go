@@ -154,7 +154,7 @@ func (s *saver) progress() func(done, total int) {
 }
 
 func (s *saver) ended(what, where string, err error) {
-	var part *partError
+	var part *whole.PartError
 	switch {
 	case err == nil:
 		s.ctx.Say("Saved " + what + ": " + where)

@@ -4,10 +4,8 @@ import (
 	"context"
 	"errors"
 	"fmt"
-	"io"
 	"os"
 	"path/filepath"
-	"sync"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/dialog"
@@ -83,38 +81,17 @@ func existing(f *audit.File, folder, base string) []string {
 // writeTables solves the audit once more and writes every time step. The tables are
 // written into a folder of their own first and moved when all are whole.
 func writeTables(ctx context.Context, f *audit.File, folder, base string, progress func(int, int)) (err error) {
-	beside, err := os.MkdirTemp(folder, ".barlitre-*")
-	if err != nil {
-		return err
-	}
-	defer func() { err = errors.Join(err, os.RemoveAll(beside)) }()
-	var mu sync.Mutex
-	var names []string
-	_, err = audit.Solve(ctx, f, audit.Options{Progress: progress, CSV: func(name string) (io.WriteCloser, error) {
-		mu.Lock()
-		defer mu.Unlock()
-		names = append(names, name)
-		return os.Create(filepath.Join(beside, name))
-	}})
+	tables := whole.NewFolder(folder)
+	defer func() { err = errors.Join(err, tables.Close()) }()
+	_, err = audit.Solve(ctx, f, audit.Options{Progress: progress, CSV: tables.Create})
 	switch {
 	case err != nil:
 		return err
-	case len(names) == 0:
+	case tables.Len() == 0:
 		return errors.New("no circuit could be solved, so there are no time steps to write; see the findings under Circuit")
 	}
-	for i, name := range names {
-		if err := os.Rename(filepath.Join(beside, name), filepath.Join(folder, base+name)); err != nil {
-			if i > 0 {
-				return &partError{fmt.Errorf("%d of %s are in place, %s is not: %w", i, plural(len(names), "table"), base+name, whole.Plain(err))}
-			}
-			return err
-		}
-	}
-	return nil
+	return tables.Place(base)
 }
-
-// partError is of an action of which a part was done.
-type partError struct{ error }
 
 func folderURI(dir string) (fyne.ListableURI, error) {
 	return storage.ListerForURI(storage.NewFileURI(dir))
