@@ -159,6 +159,8 @@ func (j *judge) piston(b *Block) {
 	seal := B
 	if b.Kind == kindPlunger {
 		seal = A
+	} else if part, has := j.annulus[b.Word("axis")]; b.Kind != kindDoubleRod && (!has || B/A < part) {
+		j.annulus[b.Word("axis")] = B / A
 	}
 	given := j.s.Axes[i].Given
 	j.laws = append(j.laws, func(x *Sample) error {

@@ -17,9 +17,10 @@ type judge struct {
 	nodes   [][]int // signals of the flows that leave each node
 	at      map[string]int
 	laws    []func(x *Sample) error
-	flow    float64 // largest flow of the run, m³/s
-	peak    float64 // highest pressure
-	left    float64 // largest flow that a node is left with
+	annulus map[string]float64 // by axis, the least share of the bore that a cylinder leaves beside its rod
+	flow    float64            // largest flow of the run, m³/s
+	peak    float64            // highest pressure
+	left    float64            // largest flow that a node is left with
 	where   string
 	passed  float64 // largest power
 	missing float64 // largest power that does not close
@@ -28,7 +29,7 @@ type judge struct {
 }
 
 func newJudge(k *Compiled, s *duty.Series, cond Conditions) *judge {
-	j := &judge{c: k, s: s, cond: cond, at: map[string]int{}}
+	j := &judge{c: k, s: s, cond: cond, at: map[string]int{}, annulus: map[string]float64{}}
 	for i, g := range k.signals {
 		j.at[g.Name] = i
 	}
@@ -127,11 +128,16 @@ func (j *judge) most(x *Sample) float64 {
 	return m
 }
 
-// asked is the highest pressure that a load alone asks for.
+// asked is the highest pressure that a load alone asks for: on the bore where it pushes, on the
+// annulus where it pulls at a cylinder with one rod.
 func (j *judge) asked(x *Sample) float64 {
 	p := 0.0
 	for i, a := range x.Axes {
-		p = math.Max(p, math.Abs(a.Load)/j.c.movers[i].volume(j.c.defaults))
+		area := j.c.movers[i].volume(j.c.defaults)
+		if part := j.annulus[j.c.axes[i].Name]; a.Load < 0 && part > 0 {
+			area *= part
+		}
+		p = math.Max(p, math.Abs(a.Load)/area)
 	}
 	return p
 }
