@@ -232,7 +232,7 @@ func (c *auditCall) tables(path string) *whole.Folder {
 	if c.several() {
 		dir = filepath.Join(dir, baseName(path))
 	}
-	return whole.NewFolder(dir)
+	return whole.NewFolder(dir, true)
 }
 
 // writeJSON writes one result, or a list of them when there are several files.

@@ -81,7 +81,7 @@ func existing(f *audit.File, folder, base string) []string {
 // writeTables solves the audit once more and writes every time step. The tables are
 // written into a folder of their own first and moved when all are whole.
 func writeTables(ctx context.Context, f *audit.File, folder, base string, progress func(int, int)) (err error) {
-	tables := whole.NewFolder(folder)
+	tables := whole.NewFolder(folder, false)
 	defer func() { err = errors.Join(err, tables.Close()) }()
 	_, err = audit.Solve(ctx, f, audit.Options{Progress: progress, CSV: tables.Create})
 	switch {

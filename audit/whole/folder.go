@@ -13,21 +13,24 @@ import (
 // are whole. Create may be called by several goroutines at once.
 type Folder struct {
 	in, beside string
+	fresh      bool // in may have to be made
 	mu         sync.Mutex
 	names      []string
 }
 
-// NewFolder collects files for the folder in, which is made when there is a first one. Close gives up what
-// was not put in place.
-func NewFolder(in string) *Folder { return &Folder{in: in} }
+// NewFolder collects files for the folder in, which with fresh set is made for the first one, if it is not
+// there. Close gives up what was not put in place.
+func NewFolder(in string, fresh bool) *Folder { return &Folder{in: in, fresh: fresh} }
 
 // Create opens a file of that name.
 func (f *Folder) Create(name string) (io.WriteCloser, error) {
 	f.mu.Lock()
 	defer f.mu.Unlock()
 	if f.beside == "" {
-		if err := os.MkdirAll(f.in, 0o755); err != nil {
-			return nil, err
+		if f.fresh {
+			if err := os.MkdirAll(f.in, 0o755); err != nil {
+				return nil, err
+			}
 		}
 		beside, err := os.MkdirTemp(f.in, ".barlitre-*")
 		if err != nil {

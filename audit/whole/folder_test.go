@@ -10,7 +10,7 @@ import (
 func TestFolder(t *testing.T) {
 	in := filepath.Join(t.TempDir(), "steps")
 	put := func(text string, place bool) {
-		f := NewFolder(in)
+		f := NewFolder(in, true)
 		for _, name := range []string{"one.csv", "two.csv"} {
 			w, err := f.Create(name)
 			if err != nil {
@@ -42,12 +42,15 @@ func TestFolder(t *testing.T) {
 	}
 }
 
-// A folder into which nothing came is not made.
+// A folder into which nothing came is not made, nor one that should be there.
 func TestFolderOfNothing(t *testing.T) {
 	in := filepath.Join(t.TempDir(), "steps")
-	f := NewFolder(in)
+	f := NewFolder(in, true)
 	if err := f.Place(""); err != nil || f.Close() != nil || f.Len() != 0 {
 		t.Fatal(err)
+	}
+	if _, err := NewFolder(in, false).Create("one.csv"); !os.IsNotExist(err) {
+		t.Error(err)
 	}
 	if _, err := os.Stat(in); !os.IsNotExist(err) {
 		t.Error("it is there")
@@ -60,7 +63,7 @@ func TestFolderInPart(t *testing.T) {
 	if err := os.MkdirAll(filepath.Join(in, "two.csv", "taken"), 0o755); err != nil {
 		t.Fatal(err)
 	}
-	f := NewFolder(in)
+	f := NewFolder(in, false)
 	for _, name := range []string{"one.csv", "two.csv"} {
 		w, err := f.Create(name)
 		if err != nil {
