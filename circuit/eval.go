@@ -125,7 +125,6 @@ func (e *eval) pass(a, b slot, q, k float64) {
 // hot is what every step of a run needs, sorted out once.
 type hot struct {
 	found      []foundNode
-	leaking    []int32 // their slots
 	free       []shaft
 	gears      []*gearboxModel
 	onShafts   []shaftBooker
@@ -170,7 +169,6 @@ func (r *run) sort() {
 	for i, n := range r.nodes {
 		if n.slot >= 0 && !n.pilot {
 			r.found = append(r.found, foundNode{i, n.slot})
-			r.leaking = append(r.leaking, int32(n.slot))
 		}
 	}
 	for _, s := range r.shafts {
@@ -223,8 +221,9 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 // what a held load asks for.
 func (r *run) leaks(e *eval) {
 	leak := r.leak
-	for _, i := range r.leaking {
-		e.out.Put(int(i), leak*e.x.At(int(i)))
+	for i := range r.found {
+		at := int(r.found[i].slot)
+		e.out.Put(at, leak*e.x.At(at))
 	}
 	if e.steady != nil {
 		for _, at := range r.found {

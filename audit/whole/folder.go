@@ -1,7 +1,6 @@
 package whole
 
 import (
-	"errors"
 	"fmt"
 	"io"
 	"os"
@@ -48,9 +47,6 @@ func (f *Folder) Len() int { return len(f.names) }
 // Place puts each file in its place, its name after base. Where one cannot be put there, those before
 // it are there already, and PartError says so.
 func (f *Folder) Place(base string) error {
-	if len(f.names) == 0 {
-		return nil
-	}
 	for i, name := range f.names {
 		err := os.Rename(filepath.Join(f.beside, name), filepath.Join(f.in, base+name))
 		switch {
@@ -74,5 +70,3 @@ func (f *Folder) Close() error {
 
 // PartError is of an action of which a part was done.
 type PartError struct{ error }
-
-func (e *PartError) Unwrap() error { return errors.Unwrap(e.error) }
