@@ -2,6 +2,7 @@ package audit
 
 import (
 	"math"
+	"slices"
 
 	"barlitre/audit/thermal"
 	"barlitre/circuit"
@@ -72,6 +73,7 @@ func newLineFlows(c *circuit.Compiled) *lineFlows {
 			straight[p.Block] = b.Passes() == circuit.NoPassage && b.Kind != "flushing"
 		}
 	}
+	slices.Sort(l.inflows) // a sum depends on its order in the last bit
 	for i := range circ.Blocks {
 		b := &circ.Blocks[i]
 		if b.Kind == "flushing" {

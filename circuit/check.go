@@ -2,6 +2,7 @@ package circuit
 
 import (
 	"fmt"
+	"maps"
 	"math"
 	"slices"
 	"sort"
@@ -98,7 +99,8 @@ func (k *checker) blocks() {
 }
 
 func (k *checker) parameters(b *Block, kind *Kind) {
-	for key, v := range b.Values {
+	for _, key := range slices.Sorted(maps.Keys(b.Values)) {
+		v := b.Values[key]
 		switch p := kind.Param(key); {
 		case p == nil || p.Type != Number:
 			k.say(Stops, b, key, "this kind of block, %s, takes no number for %q", InSentence(kind.Title), key)
@@ -108,7 +110,8 @@ func (k *checker) parameters(b *Block, kind *Kind) {
 			}
 		}
 	}
-	for key, w := range b.Words {
+	for _, key := range slices.Sorted(maps.Keys(b.Words)) {
+		w := b.Words[key]
 		p := kind.Param(key)
 		if p == nil || p.Type == Number {
 			k.say(Stops, b, key, "this kind of block, %s, takes no word for %q", InSentence(kind.Title), key)

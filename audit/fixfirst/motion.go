@@ -2,7 +2,9 @@ package fixfirst
 
 import (
 	"fmt"
+	"maps"
 	"math"
+	"slices"
 
 	"barlitre/audit"
 	"barlitre/circuit"
@@ -56,7 +58,8 @@ func gateMissed(d *audit.DutyRun, g circuit.Gate) string {
 // spoils says in words what the motion after a cure lacks that was there before it; "" where nothing. Gates
 // count where they are asked for.
 func (m motion) spoils(before motion, gates bool) string {
-	for key, g := range m.missed {
+	for _, key := range slices.Sorted(maps.Keys(m.missed)) {
+		g := m.missed[key]
 		if b, was := before.missed[key]; gates && (!was || g.by > b.by*(1+worse)) {
 			return g.text
 		}
