@@ -85,7 +85,7 @@ func (k *Plot) constant(ch circuit.Channel, power float64) {
 	}
 	t := k.Powers[0].T
 	p := k.Powers[0]
-	p.Name, p.Title, p.T, p.V = ch.Block, ch.Kind, []float64{t[0], t[len(t)-1]}, []float64{power, power}
+	p.Name, p.Title, p.T, p.V, p.Steps = ch.Block, ch.Kind, []float64{t[0], t[len(t)-1]}, []float64{power, power}, nil
 	k.Channels = append(k.Channels[:len(k.Channels):len(k.Channels)], ch)
 	k.Powers = append(k.Powers, p)
 }

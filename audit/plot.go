@@ -14,6 +14,7 @@ type Track struct {
 	Name, Title string
 	Dim         units.Dim
 	T, V        []float64 // s, SI
+	Steps       []float64 // SI, at Plot.Steps; nil in a plot that is not thinned, and of a constant
 }
 
 // At returns the value at time x [SI], linear between the points kept; outside the
@@ -104,14 +105,16 @@ func (p *Plot) shareTimes() {
 
 // Plot holds the courses of a run: its signals, and the powers of its channels.
 // A long run is thinned to at most Points points a track: of each stretch the
-// lowest and the highest value are kept, so that no peak is lost.
+// lowest and the highest value are kept, so that no peak is lost. Tracks then have other
+// instants each; to be set against one another they are read at Steps.
 type Plot struct {
 	Signals  []Track // by Compiled.Signals
 	Powers   []Track // W, by Compiled.Channels
 	Measured []Track // what the duty says was measured; Name is that of the signal it belongs to
 	Channels []circuit.Channel
 	Thinned  bool
-	ways     *ways // of these signals
+	Steps    []float64 // s, of a thinned plot: the time step that ends each stretch, at which every track is known
+	ways     *ways     // of these signals
 }
 
 // PlotPoints is the largest number of points a track keeps: more than a wide

@@ -6,7 +6,7 @@ import (
 )
 
 // recorder is the circuit.Receiver that fills a Plot. The first and the last time step
-// are kept, and of each stretch between the lowest and the highest value of every track.
+// are kept, and of each stretch between the lowest and the highest value of every track, and its last step.
 type recorder struct {
 	plot   *Plot
 	stride int // time steps a stretch
@@ -18,15 +18,18 @@ type recorder struct {
 	part   bool
 }
 
-// stretch holds the extremes of some time steps, by track: the signals, then the powers.
+// stretch holds the extremes of some time steps, by track: the signals, then the powers; once it has
+// ended, its last step too.
 type stretch struct {
 	lowT, low, topT, top []float64
+	last                 []float64
+	lastT                float64
 	begun                bool
 }
 
 func newStretch(tracks int) stretch {
-	v := make([]float64, 4*tracks)
-	return stretch{lowT: v[:tracks], low: v[tracks : 2*tracks], topT: v[2*tracks : 3*tracks], top: v[3*tracks:]}
+	v := make([]float64, 5*tracks)
+	return stretch{lowT: v[:tracks], low: v[tracks : 2*tracks], topT: v[2*tracks : 3*tracks], top: v[3*tracks : 4*tracks], last: v[4*tracks:]}
 }
 
 // newRecorder makes a recorder for about so many time steps.
@@ -57,7 +60,7 @@ func (r *recorder) Sample(s *circuit.Sample) error {
 	copy(r.values[copy(r.values, s.Signals):], s.Power)
 	r.now.take(s.T, r.values)
 	if r.seen%r.stride == 0 {
-		r.end()
+		r.close()
 	}
 	r.seen++
 	return nil
@@ -82,7 +85,7 @@ func (w *stretch) take(t float64, values []float64) {
 	}
 }
 
-// join takes the extremes of a later stretch.
+// join takes the extremes and the last step of a later part of the stretch.
 func (w *stretch) join(o *stretch) {
 	if !w.begun {
 		*w, *o = *o, *w
@@ -96,6 +99,14 @@ func (w *stretch) join(o *stretch) {
 			w.top[i], w.topT[i] = o.top[i], o.topT[i]
 		}
 	}
+	w.lastT, w.last, o.last = o.lastT, o.last, w.last
+}
+
+// close ends the stretch with the time step at hand.
+func (r *recorder) close() {
+	r.now.lastT = r.t
+	copy(r.now.last, r.values)
+	r.end()
 }
 
 // end keeps the stretch so far and begins another.
@@ -115,6 +126,12 @@ func (r *recorder) end() {
 		if t2 != t || v2 != v {
 			k.put(t2, v2)
 		}
+		if r.plot.Thinned {
+			k.Steps = append(k.Steps, w.last[i])
+		}
+	}
+	if r.plot.Thinned {
+		r.plot.Steps = append(r.plot.Steps, w.lastT)
 	}
 	w.begun = false
 }
@@ -142,7 +159,7 @@ func (r *recorder) Join(part circuit.Receiver) error {
 // done returns the plot once all time steps have come.
 func (r *recorder) done() *Plot {
 	if r.now.begun {
-		r.end()
+		r.close()
 	}
 	for i, v := range r.values {
 		if k := r.track(i); r.seen > 0 && (k.T[len(k.T)-1] != r.t || k.V[len(k.V)-1] != v) {

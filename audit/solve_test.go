@@ -8,8 +8,10 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"math/rand"
 	"os"
 	"path/filepath"
+	"slices"
 	"strconv"
 	"strings"
 	"sync"
@@ -307,6 +309,47 @@ func TestPlotIsThinnedWithoutLosingPeaks(t *testing.T) {
 			t.Errorf("%d steps: the peak is lost, top %g", n, top)
 		}
 		wants(t, fmt.Sprintf("%d steps, at the peak", n), k.At(float64(n/2)), 9, 1e-12)
+	}
+}
+
+// Where a thinned plot is read at its steps, values of one step stay together, also from parts: two pressures that keep one
+// distance keep it there, though each leaps about on its own.
+func TestStepsOfAThinnedPlotBelongTogether(t *testing.T) {
+	const n, cut = 12345, 5000
+	sig := []circuit.Signal{{Name: "a"}, {Name: "b"}}
+	r := rand.New(rand.NewSource(1))
+	samples := make([]circuit.Sample, n)
+	for k := range samples {
+		v := 100 * r.Float64()
+		samples[k] = circuit.Sample{T: float64(k), Signals: []float64{v, v - 3}}
+	}
+	take := func(to circuit.Receiver, list []circuit.Sample) {
+		for k := range list {
+			if err := to.Sample(&list[k]); err != nil {
+				t.Fatal(err)
+			}
+		}
+	}
+	whole, joined := newRecorder(sig, nil, n), newRecorder(sig, nil, n)
+	take(whole, samples)
+	take(joined, samples[:cut])
+	part := joined.Part(cut, n, &samples[cut-1])
+	take(part, samples[cut:])
+	if err := joined.Join(part); err != nil {
+		t.Fatal(err)
+	}
+	p, q := whole.done(), joined.done()
+	a, b := &p.Signals[0], &p.Signals[1]
+	if len(p.Steps) < PlotPoints/3 || len(a.Steps) != len(p.Steps) || p.Steps[len(p.Steps)-1] != n-1 {
+		t.Fatalf("%d steps, to %g", len(p.Steps), p.Steps[len(p.Steps)-1])
+	}
+	for i, x := range p.Steps {
+		if want := samples[int(x)].Signals; a.Steps[i] != want[0] || b.Steps[i] != want[1] {
+			t.Fatalf("at %g: %g and %g, want %v", x, a.Steps[i], b.Steps[i], want)
+		}
+	}
+	if !slices.Equal(q.Steps, p.Steps) || !slices.Equal(q.Signals[0].Steps, a.Steps) || !slices.Equal(q.Signals[1].Steps, b.Steps) {
+		t.Error("from parts, other steps are kept")
 	}
 }
 

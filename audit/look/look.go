@@ -146,11 +146,8 @@ func (p *Plant) Course(d *audit.DutyRun) *Course {
 	if d.Plot == nil || len(d.Plot.Signals) == 0 {
 		return s
 	}
-	s.T = d.Plot.Signals[0].T
-	for _, k := range d.Plot.Signals[1:] { // a thinned plot keeps other instants of each
-		if len(k.T) > len(s.T) {
-			s.T = k.T
-		}
+	if s.T = d.Plot.Steps; !d.Plot.Thinned {
+		s.T = d.Plot.Signals[0].T
 	}
 	s.State = make([]State, len(s.T))
 	for i := range p.C.Blocks {
@@ -187,12 +184,15 @@ func either(d *audit.DutyRun, a, b string) *audit.Track {
 	return Track(d, b)
 }
 
-// ValueOf is the value of a track at an instant of a course.
+// ValueOf is the value of a track at an instant of a course, as it was there: values of tracks at one instant belong together.
 func ValueOf(k *audit.Track, s *Course, i int) float64 {
-	if i < len(k.T) && k.T[i] == s.T[i] { // a thinned plot keeps other instants of each
+	switch {
+	case k.Steps != nil:
+		return k.Steps[i]
+	case i < len(k.T) && k.T[i] == s.T[i]:
 		return k.V[i]
 	}
-	return k.At(s.T[i])
+	return k.At(s.T[i]) // a constant has two points
 }
 
 // Moment is a value, and when it was met.
@@ -220,25 +220,35 @@ func (p *Plant) Top(w When, of func(d *audit.DutyRun, s *Course, i int) float64)
 }
 
 // Highest is the largest value of a signal.
-func (p *Plant) Highest(name string, w When) Moment {
-	return p.Top(w, func(d *audit.DutyRun, s *Course, i int) float64 {
-		if k := Track(d, name); k != nil {
-			return ValueOf(k, s, i)
-		}
-		return math.Inf(-1)
-	})
-}
+func (p *Plant) Highest(name string, w When) Moment { return p.extreme(name, w, 1) }
 
 // Lowest is the smallest value of a signal.
-func (p *Plant) Lowest(name string, w When) Moment {
-	m := p.Top(w, func(d *audit.DutyRun, s *Course, i int) float64 {
-		if k := Track(d, name); k != nil {
-			return -ValueOf(k, s, i)
+func (p *Plant) Lowest(name string, w When) Moment { return p.extreme(name, w, -1) }
+
+// extreme is the largest value of a signal times a sign, of all points that its tracks keep; those between two
+// instants of a course count where both do.
+func (p *Plant) extreme(name string, w When, sign float64) Moment {
+	best := Moment{V: math.Inf(-1)}
+	for _, d := range p.Run.Duties {
+		k, c := Track(d, name), p.Course(d)
+		if k == nil {
+			continue
 		}
-		return math.Inf(-1)
-	})
-	m.V = -m.V
-	return m
+		at := 0
+		for i, t := range k.T {
+			if k.Steps == nil {
+				at = i
+			}
+			for at < len(c.T)-1 && c.T[at] < t {
+				at++
+			}
+			if v := sign * k.V[i]; v > best.V && w(c.State[at]) && (k.Steps == nil || w(c.State[max(0, at-1)])) {
+				best = Moment{v, t, d.Duty.Name, true}
+			}
+		}
+	}
+	best.V *= sign
+	return best
 }
 
 // Of is what is read of a duty at the instants of its course; nil where the duty has no such value.
