@@ -9,7 +9,7 @@ import "math"
 // Rows, columns and places are those in work, where it is replayed.
 //
 // Order: Markowitz, The elimination form of the inverse, Management Science 3
-// (1957), among pivots of at least a tenth of their column (rows scaled).
+// (1957), in the column with the fewest entries, among pivots of at least a tenth of it (rows scaled).
 type plan struct {
 	key     []uint64 // which unknowns rest on a bound
 	entries int      // of the slopes when it was made; it counts on those that came later being zero

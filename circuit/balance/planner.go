@@ -179,7 +179,7 @@ func (w *planner) load(j *Slopes, p *plan, lean bool) {
 func (w *planner) step(c int) int32 { return int32(w.n + c) }
 
 // choose finds the next pivot: a lone entry of its row or column, which costs
-// nothing, else the one with the least fill, and of these the largest.
+// nothing, else one with little fill.
 func (w *planner) choose() (r, c int) {
 	for len(w.alone) > 0 {
 		i := int(w.alone[len(w.alone)-1])
@@ -203,45 +203,32 @@ func (w *planner) choose() (r, c int) {
 // sizeable is an entry as a share of the largest that its row was loaded with.
 func (w *planner) sizeable(r, c int) float64 { return math.Abs(w.a[r*w.n+c]) * w.scale[r] }
 
-// wellSized is the share of its row from which on a pivot that no other undercuts is taken at
-// once; after enoughColumns the best so far is.
-const (
-	wellSized     = 0.3
-	enoughColumns = 12
-)
-
-// cheapest goes through the columns by their entries, and ends where no column with more of
-// them could cost less.
+// cheapest takes the first column, of those with the fewest entries, that has a pivot: to compare more of
+// them costs more than the fill it saves.
 func (w *planner) cheapest() (r, c int) {
-	r, c = -1, -1
-	best, most, tried := math.MaxInt, 0.0, 0
-	for entries := 1; entries < len(w.head) && best >= entries; entries++ {
-		for k := w.head[entries]; k >= 0; k = w.next[k] {
-			i, cost, v := w.ofColumn(int(k))
-			if cost < best || (cost == best && v > most) {
-				best, most, r, c = cost, v, i, int(k)
-			}
-			if tried++; r >= 0 && (tried >= enoughColumns || best == entries-1 && most > wellSized) {
-				return r, c
+	for _, k := range w.head[1:] {
+		for ; k >= 0; k = w.next[k] {
+			if r := w.ofColumn(int(k)); r >= 0 {
+				return r, int(k)
 			}
 		}
 	}
-	return r, c
+	return -1, -1
 }
 
-// ofColumn returns the row of the best pivot in a column, what it costs and its size; where
-// there is none, it costs without end.
-func (w *planner) ofColumn(c int) (r, cost int, size float64) {
+// ofColumn returns the row of the pivot with the least fill in a column, of these the largest; −1 where
+// there is none.
+func (w *planner) ofColumn(c int) int {
 	top := 0.0
 	for at, set := range w.inCol[c] {
 		for ; set != 0; set &= set - 1 {
 			top = max(top, w.sizeable(at<<6+bits.TrailingZeros64(set), c))
 		}
 	}
-	r, cost = -1, math.MaxInt
 	if !(top >= tinyPivot) {
-		return
+		return -1
 	}
+	r, fewest, size := -1, math.MaxInt, 0.0
 	for at, set := range w.inCol[c] {
 		for ; set != 0; set &= set - 1 {
 			i := at<<6 + bits.TrailingZeros64(set)
@@ -249,12 +236,12 @@ func (w *planner) ofColumn(c int) (r, cost int, size float64) {
 			if !(v >= pivotShare*top) {
 				continue
 			}
-			if n := (w.perRow[i] - 1) * (w.perCol[c] - 1); n < cost || (n == cost && v > size) {
-				r, cost, size = i, n, v
+			if n := w.perRow[i]; n < fewest || (n == fewest && v > size) {
+				r, fewest, size = i, n, v
 			}
 		}
 	}
-	return
+	return r
 }
 
 // eliminate takes the pivot at row r, column c out of the matrix, and out of the right side b
