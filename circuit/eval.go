@@ -131,6 +131,7 @@ type hot struct {
 	converters []*converterModel
 	slowly     []slowModel
 	forces     []force
+	families   families
 	solved     float64 // instant of the last balance [s]
 	asked      []asked // by axis, of the last balance
 }
@@ -181,6 +182,7 @@ func (r *run) sort() {
 			r.forces = append(r.forces, force{i, r.forceUnit(row)})
 		}
 	}
+	r.families = familiesOf(r.models)
 	for _, m := range r.models {
 		if g, ok := m.(*gearboxModel); ok {
 			r.gears = append(r.gears, g)
@@ -212,9 +214,7 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 		e.add(s.sigma, -e.val(s.speed))
 		e.same(s.sigma, s.speed, -1)
 	}
-	for _, m := range r.models {
-		m.eval(e)
-	}
+	r.families.eval(e)
 }
 
 // leaks sets the rows of nodes to what ties them to tank, and adds what ties them to

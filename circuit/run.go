@@ -267,7 +267,7 @@ func (r *run) begin(k int, share float64) {
 		s.restK[n] = 0
 	}
 	s.resting = s.resting[:0]
-	for _, m := range r.models {
+	for _, m := range r.families.prepared {
 		m.begin(s)
 	}
 }
@@ -314,9 +314,7 @@ func (r *run) bookAll() {
 	clear(b.sums)
 	b.pulsed = false
 	clear(b.shaft)
-	for _, m := range r.models {
-		m.book(b)
-	}
+	r.families.book(b)
 	for _, g := range r.gears {
 		g.bookTorque(b)
 	}
