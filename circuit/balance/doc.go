@@ -13,14 +13,16 @@
 // solution is a primal-dual active set method; where that fails, Newton on the
 // Fischer-Burmeister function with a non-monotone line search; then
 // pseudo-transient continuation (implicit Euler on x' = −G); each from the last
-// solution and from cold starts. Which rung solved a step is reported.
+// solution and from cold starts. Where the problem has turned to another form, so that
+// the last solution may lie far off, Fischer-Burmeister comes as soon as a step has to be
+// halved. Which rung solved a step is reported.
 //
 // Speed: most points cost two evaluations, one with slopes and one to accept the
 // step. The start is foretold from up to six solutions (past.go), so that in a smooth
 // duty one Newton step does; in a rough one a last step is taken with the factors at
 // hand. The elimination is worked out once for each set of active bounds and replayed
-// on the entries that the slopes have and that are not zero (plan.go, slopes.go); slopes that
-// stay as they are a problem states once (Slopes.AddSteady). Numbers
+// on the entries that the slopes have and that are not zero (plan.go, slopes.go), of weighed
+// rows too (weighted.go); slopes that stay as they are a problem states once (Slopes.AddSteady). Numbers
 // known in advance stand before the unknowns (Border), so that the problem never asks which
 // is which. Where a plan does not serve, pivots are chosen for that step alone (direct.go,
 // planner.go); that, and finding plans, is what a change of direction costs. Only plans are

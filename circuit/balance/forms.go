@@ -9,6 +9,7 @@ type aim struct {
 	smooth bool
 	delta  float64
 	loose  float64 // factor on the tolerance, 0 = 1
+	wary   bool    // it is given up at the first step that has to be halved
 }
 
 // row turns G, x and the bounds into a residual and the two weights of its

@@ -43,7 +43,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			return false, it
 		}
 		if !s.now.slopes {
-			if left := norm * norm / before; planned && !repeated && !s.halved && 4*left <= tol && s.again(p, x, norm) {
+			if left := norm * norm / before; planned && s.used == &s.plans && !repeated && !s.halved && 4*left <= tol && s.again(p, x, norm) {
 				norm, before, repeated = s.now.norm, norm, true
 				continue
 			}
@@ -56,6 +56,9 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 		}
 		norm = s.lineSearch(p, x, a, planned)
 		if norm > lostShare*max(1, before) {
+			return false, it + 1
+		}
+		if a.wary && s.halved {
 			return false, it + 1
 		}
 		s.hist[it%len(s.hist)] = norm
@@ -163,7 +166,7 @@ func (s *Solver) lineSearch(p Problem, x []float64, a aim, planned bool) float64
 		if norm < before || norm < s.recent() || norm == 0 {
 			return norm
 		}
-		if planned && k == 0 && !s.plans.last.sure(s.plans.work) { // the safer factors first
+		if planned && k == 0 && !s.used.last.sure(s.used.work) { // the safer factors first
 			planned = false
 			copy(x, s.xt)
 			s.norm(p, x, a, true)

@@ -14,6 +14,7 @@ type plan struct {
 	key     []uint64 // which unknowns rest on a bound
 	entries int      // of the slopes when it was made; it counts on those that came later being zero
 	none    []int32  // entries that were zero when it was made, and count on being so
+	lean    bool     // whether there may be any of these
 	sparse  bool     // false: singular when it was made
 	bad     int      // times a pivot was too small
 	next    *plan    // another one of the same key

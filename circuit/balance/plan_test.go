@@ -37,7 +37,7 @@ func TestPlanAgainstLibrary(t *testing.T) {
 		}
 		draw()
 		var p plan
-		newPlanner(n).make(&p, j, key, true)
+		newPlanner(n).make(&p, &j.entries, key, true)
 		if !p.sparse {
 			continue
 		}
@@ -121,9 +121,9 @@ func TestLeanPlanCountsOnZeros(t *testing.T) {
 	}
 	set := func(a, b, c, d float64) { copy(j.val[firstEntry:], []float64{a, b, c, d}) }
 	set(2, 0, 1, 4)
-	lean := ps.get(j, newPlanner(2))
+	lean := ps.get(&j.entries, newPlanner(2))
 	set(2, 3, 1, 4)
-	if full := ps.get(j, newPlanner(2)); full == lean || len(full.none) != 0 {
+	if full := ps.get(&j.entries, newPlanner(2)); full == lean || len(full.none) != 0 {
 		t.Error("the plan for a triangular matrix serves a full one")
 	}
 }
@@ -163,5 +163,76 @@ func TestManyPlans(t *testing.T) {
 	}
 	if len(warm.plans.made) != mostPlans {
 		t.Errorf("%d plans were made: the room for %d was never used up", len(warm.plans.made), mostPlans)
+	}
+}
+
+// A step whose rows are weighed is the one that a library finds for the full matrix, also with the
+// weights of another step, of which some leave a row to its bound alone.
+func TestWeightedPlanAgainstLibrary(t *testing.T) {
+	solved := 0
+	for seed := uint64(0); seed < 300; seed++ {
+		r := rand.New(rand.NewPCG(seed, 8))
+		n := 1 + r.IntN(70)
+		s := NewSolver(n)
+		place := func(i, k int) {
+			if at := i*s.j.side + k + s.j.zero; s.j.at[at] == noPlace {
+				s.j.place(at)
+			}
+		}
+		for i := range n {
+			for range 1 + r.IntN(4) {
+				place(i, r.IntN(n))
+			}
+		}
+		for round := range 3 {
+			if round == 2 { // slopes that come later
+				place(r.IntN(n), r.IntN(n))
+			}
+			for k := firstEntry; k < len(s.j.val); k++ {
+				s.j.val[k] = (1 + r.Float64()) * float64(1-2*r.IntN(2))
+			}
+			rhs, shift := make([]float64, n), r.Float64()
+			for i := range n {
+				s.rim[i], s.steep[i] = 1+r.Float64(), r.Float64()
+				if r.IntN(4) == 0 {
+					s.steep[i] = 0
+				}
+				s.r[i] = r.Float64() - 0.5
+				rhs[i] = -s.r[i]
+			}
+			w := &s.soft
+			w.lay(s.j, s.rim, s.steep, shift)
+			if p := w.get(&w.entries, s.maker); !p.sparse || !s.factored(&w.plans, w.val, s.loadWeighted(p)) {
+				w.remake(&w.entries, s.maker)
+				if !w.last.sparse || !s.factored(&w.plans, w.val, s.loadWeighted(w.last)) {
+					continue // singular
+				}
+			}
+			w.last.backward(w.work)
+
+			a := mat.NewDense(n, n, nil)
+			for k := firstEntry; k < len(s.j.val); k++ {
+				i, c := int(s.j.row[k]), int(s.j.col[k])
+				a.Set(i, c, s.steep[i]*s.j.val[k])
+			}
+			for i := range n {
+				a.Set(i, i, a.At(i, i)+s.rim[i]+s.steep[i]*shift)
+			}
+			var lib mat.LU
+			lib.Factorize(a)
+			var want mat.VecDense
+			if lib.Cond() > 1e6 || lib.SolveVecTo(&want, false, mat.NewVecDense(n, rhs)) != nil {
+				continue
+			}
+			for i, d := range s.dx {
+				if d := math.Abs(d - want.AtVec(i)); d > 1e-7*mat.Norm(&want, math.Inf(1)) {
+					t.Fatalf("seed %d, n = %d, round %d: step %d is %g, gonum %g", seed, n, round, i, s.dx[i], want.AtVec(i))
+				}
+			}
+			solved++
+		}
+	}
+	if solved < 600 {
+		t.Errorf("only %d steps compared", solved)
 	}
 }

@@ -57,10 +57,10 @@ func first(set []uint64) int {
 	return -1
 }
 
-// make works out the plan p for the slopes j as they are now; with lean set it leaves out
+// make works out the plan p for the entries j as they are now; with lean set it leaves out
 // entries that are zero, and holds while they are.
-func (w *planner) make(p *plan, j *Slopes, key []uint64, lean bool) {
-	*p = plan{key: append(p.key[:0], key...), entries: len(j.val), none: p.none[:0], fixed: p.fixed[:0], least: p.least[:0],
+func (w *planner) make(p *plan, j *entries, key []uint64, lean bool) {
+	*p = plan{key: append(p.key[:0], key...), lean: lean, entries: len(j.val), none: p.none[:0], fixed: p.fixed[:0], least: p.least[:0],
 		pivots: p.pivots[:0], back: p.back[:0], tied: p.tied[:0]}
 	w.load(j, p, lean)
 	for w.left > 0 {
@@ -150,7 +150,7 @@ func (w *planner) lone(entries, which int) {
 }
 
 // load lays the rows that are not on a bound out in w.
-func (w *planner) load(j *Slopes, p *plan, lean bool) {
+func (w *planner) load(j *entries, p *plan, lean bool) {
 	w.begin()
 	for i := range w.n {
 		if bit(p.key, i) {

@@ -21,7 +21,7 @@ func newPlans(n int) plans {
 const mostVariants = 8
 
 // get returns the plan for the present key and slopes.
-func (ps *plans) get(j *Slopes, maker *planner) *plan {
+func (ps *plans) get(j *entries, maker *planner) *plan {
 	if p := ps.last; p != nil && p.fits(ps.key, j) {
 		return p
 	}
@@ -44,11 +44,25 @@ func (ps *plans) get(j *Slopes, maker *planner) *plan {
 		p.next = ps.of[h]
 	}
 	ps.of[h] = p
+	ps.take(p)
+	return p
+}
+
+// take makes p the last plan, and room for it.
+func (ps *plans) take(p *plan) {
 	if len(ps.work) < p.size {
 		ps.work = make([]float64, 2*p.size)
 	}
 	ps.last = p
-	return p
+}
+
+// remake works the last plan out anew, in its own place.
+func (ps *plans) remake(j *entries, maker *planner) {
+	p := ps.last
+	next := p.next
+	maker.make(p, j, ps.key, p.lean)
+	p.next = next
+	ps.take(p)
 }
 
 // unused returns room for a plan for n unknowns. When there are too many, all are
@@ -71,7 +85,7 @@ func (ps *plans) forget() {
 }
 
 // fits reports whether p was made for this key and pattern, and works.
-func (p *plan) fits(key []uint64, j *Slopes) bool {
+func (p *plan) fits(key []uint64, j *entries) bool {
 	if p.bad > pivotBad || !p.met(key) {
 		return false
 	}
@@ -102,21 +116,32 @@ func (p *plan) met(key []uint64) bool {
 // step it only finds, and notes so in s.far.
 func (s *Solver) planned(x []float64, a aim) bool {
 	if a.smooth || a.delta > 0 {
-		return false
+		return s.plannedWeighted(x, a)
 	}
-	p := s.plans.get(s.j, s.maker)
+	p := s.plans.get(&s.j.entries, s.maker)
 	if !p.sparse {
 		return false
 	}
-	work := s.plans.work
-	if s.load() {
-		p.tie(s.j.val, work)
-	}
-	if !p.run(s.n, s.j.val, work) {
+	if !s.factored(&s.plans, s.j.val, s.load()) {
 		p.bad++
 		return false
 	}
-	p.backward(work)
+	return s.gone(x)
+}
+
+// factored replays the last plan, once the residual and the steps of unknowns on a bound are loaded;
+// moved tells whether any of these moves. It reports false when a pivot has become too small.
+func (s *Solver) factored(of *plans, val []float64, moved bool) bool {
+	s.used = of
+	if moved {
+		of.last.tie(val, of.work)
+	}
+	return of.last.run(s.n, val, of.work)
+}
+
+// gone takes the step that was factored; see planned.
+func (s *Solver) gone(x []float64) bool {
+	s.used.last.backward(s.used.work)
 	if s.far = !s.stride(x); s.far {
 		copy(x, s.xt)
 		return s.numbers()

@@ -17,7 +17,7 @@ func (s *Solver) Response(p Problem, x []float64, of []int, out []float64) {
 
 // plannedResponse finds it with the plan for the active bounds, if there is one and it works.
 func (s *Solver) plannedResponse(of []int, out []float64) bool {
-	p, val := s.plans.get(s.j, s.maker), s.j.val
+	p, val := s.plans.get(&s.j.entries, s.maker), s.j.val
 	work := s.plans.work
 	if !p.sparse || !p.run(s.n, val, work) {
 		return false

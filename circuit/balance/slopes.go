@@ -9,8 +9,7 @@ type Slopes struct {
 	known      int     // rows and columns before the first that count for nothing
 	side, zero int     // known+n, and the place of row 0, column 0 in at
 	at         []int32 // side²: index into val
-	val        []float64
-	row, col   []int32 // of each entry
+	entries
 
 	steady  []float64 // by entry: that part of val which stays as it is from one evaluation to the next
 	stale   bool      // until something changes it
@@ -21,6 +20,12 @@ type Slopes struct {
 
 	tried      []int32 // room for grow
 	sums, rest []float64
+}
+
+// entries are those of a sparse matrix: value, row and column of each.
+type entries struct {
+	val      []float64
+	row, col []int32
 }
 
 // The first entries take what has no place yet, and what counts for nothing.

@@ -80,6 +80,8 @@ type Solver struct {
 	hist            [5]float64
 	now             point
 	plans           plans
+	soft            weighted // the same for rows that are weighed
+	used            *plans   // by the last step with a plan
 	past            past
 	far             bool     // the step in dx may have to be shortened
 	halved          bool     // the last step was
@@ -97,7 +99,7 @@ type point struct {
 
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
-	s := &Solver{n: n, maker: newPlanner(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), past: newPast(n)}
+	s := &Solver{n: n, maker: newPlanner(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), soft: newWeighted(n), past: newPast(n)}
 	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep, &s.guessed.g, &s.guessed.r} {
 		*p = make([]float64, n)
 	}
@@ -116,6 +118,7 @@ func (s *Solver) Reset() {
 	s.Foretell, s.far, s.now = false, false, point{}
 	s.j.border(s.j.known)
 	s.plans.forget()
+	s.soft.border(s.n)
 	s.past.forget()
 }
 
@@ -125,6 +128,7 @@ func (s *Solver) Reset() {
 func (s *Solver) Border(known int) []float64 {
 	if s.rows == nil || known != s.j.known {
 		s.j.border(known)
+		s.soft.border(s.n)
 		s.rows = make([]float64, known+s.n, known+s.n+1) // room for place 0, if there are no unknowns
 		s.g = s.rows[known:]
 	}
@@ -132,6 +136,8 @@ func (s *Solver) Border(known int) []float64 {
 }
 
 // Restate asks the problem for its steady slopes again (Slopes.AddSteady): something has changed them.
+// The next solution may lie far off: there the smoothed form comes as soon as a step of Newton's
+// method leads astray.
 func (s *Solver) Restate() { s.j.stale = true }
 
 // Residual evaluates the min/max residual of row i at the last evaluated point.
@@ -147,14 +153,25 @@ func (s *Solver) Row(i int) float64 { return s.g[i] }
 func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, x []float64)) Result {
 	copy(s.start, x)
 	foretold := s.Foretell && s.past.guess(x, s.Lo, s.Hi)
-	worse := false
+	worse, turned := false, s.j.stale && s.past.count > 0 // from the last solution to another form
 	s.norm(p, x, aim{}, true)
 	if foretold && s.now.norm > poorGuess {
 		foretold = s.keepGuess(p, x)
 		worse = !foretold
 	}
-	ok, it := s.iterate(p, x, aim{}, warmSteps)
-	if !ok && foretold {
+	ok, it := s.iterate(p, x, aim{wary: turned}, warmSteps)
+	if !ok && turned {
+		copy(x, s.start)
+		s.j.Tangent = true
+		ok, more := s.smooth(p, x, 40)
+		s.j.Tangent = false
+		it += more
+		if ok {
+			s.past.begin(x)
+			return Result{Rung: WarmSmooth, Iterations: it, Norm: s.now.norm}
+		}
+	}
+	if !ok && (foretold || turned) {
 		worse = true
 		copy(x, s.start)
 		more := 0
@@ -172,7 +189,7 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 	s.past.forget()
 	s.j.Tangent = true
 	defer func() { s.j.Tangent = false }()
-	res := s.ladder(p, x, it, levels, cold)
+	res := s.ladder(p, x, it, levels, cold, turned)
 	if res.Solved() {
 		s.past.begin(x)
 	}
@@ -207,8 +224,9 @@ func (s *Solver) keepGuess(p Problem, x []float64) bool {
 	return true
 }
 
-// ladder goes on where Newton from the step before has ended, after total iterations.
-func (s *Solver) ladder(p Problem, x []float64, total, levels int, cold func(level int, x []float64)) Result {
+// ladder goes on where Newton from the step before has ended, after total iterations; smoothed reports
+// whether the first of its rungs has been tried.
+func (s *Solver) ladder(p Problem, x []float64, total, levels int, cold func(level int, x []float64), smoothed bool) Result {
 	bestNorm := math.Inf(1)
 	try := func(rung Rung, run func() (bool, int)) (Result, bool) {
 		ok, it := run()
@@ -232,11 +250,15 @@ func (s *Solver) ladder(p Problem, x []float64, total, levels int, cold func(lev
 		return func() (bool, int) { return s.transient(p, x, d0) }
 	}
 	eased := func() (bool, int) { return s.eased(p, x) }
-	for _, l := range []rung{
+	rungs := []rung{
 		{WarmSmooth, -1, smooth(40)}, {Cold, 0, newton(30)}, {ColdSmooth, 0, smooth(60)},
 		{Eased, -1, eased}, {Eased, 0, eased},
 		{WarmTransient, -1, transient(1)}, {ColdTransient, 0, transient(10)},
-	} {
+	}
+	if smoothed {
+		rungs = rungs[1:]
+	}
+	for _, l := range rungs {
 		s.restart(x, l.from, cold)
 		if res, ok := try(l.r, l.run); ok {
 			return res
