@@ -20,13 +20,13 @@ func TestSteadyStepsAllocateNothing(t *testing.T) {
 		plain := *c.d
 		plain.Sampled = true
 		d := dithered(&plain, c.axes)
-		cycles := repeated(d, 12)
+		cycles := repeated(d, 16)
 		k, found := Compile(build(t, c.text), c.axes, cycles)
 		if k == nil {
 			t.Fatal(found)
 		}
 		s := k.Series(cycles)
-		n := len(s.T) / 12
+		n := len(s.T) / 16
 		r := newRun(k, k.Defaults(), trialOil, s)
 		at := 0
 		var st State
@@ -40,7 +40,8 @@ func TestSteadyStepsAllocateNothing(t *testing.T) {
 			})
 		}
 		balance(4 * n)
-		if few, all := balance(8), balance(n); all > few {
+		// What else goes on in the program may allocate too, but not in each of three cycles.
+		if few, all := balance(8), min(balance(n), balance(n), balance(n)); all > few {
 			t.Errorf("%s: a cycle of %d steps allocates %g times, 8 steps %g times", c.name, n, all, few)
 		}
 	}
