@@ -11,12 +11,10 @@ type families struct {
 	checks       []*checkModel
 	filters      []*filterModel
 	others       []model
-	prepared     []model // all that have something to prepare, in the order of the circuit
 }
 
 func familiesOf(all []model) (f families) {
 	for _, m := range all {
-		idle := false
 		switch m := m.(type) {
 		case *pistonModel:
 			f.pistons = append(f.pistons, m)
@@ -27,16 +25,13 @@ func familiesOf(all []model) (f families) {
 		case *valveModel:
 			f.valves = append(f.valves, m)
 		case *compensatorModel:
-			f.compensators, idle = append(f.compensators, m), true
+			f.compensators = append(f.compensators, m)
 		case *checkModel:
-			f.checks, idle = append(f.checks, m), true
+			f.checks = append(f.checks, m)
 		case *filterModel:
-			f.filters, idle = append(f.filters, m), true
+			f.filters = append(f.filters, m)
 		default:
 			f.others = append(f.others, m)
-		}
-		if !idle {
-			f.prepared = append(f.prepared, m)
 		}
 	}
 	return f

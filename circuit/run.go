@@ -267,7 +267,7 @@ func (r *run) begin(k int, share float64) {
 		s.restK[n] = 0
 	}
 	s.resting = s.resting[:0]
-	for _, m := range r.families.prepared {
+	for _, m := range r.models {
 		m.begin(s)
 	}
 }

@@ -2,6 +2,7 @@ package circuit
 
 import (
 	"context"
+	"runtime/debug"
 	"testing"
 
 	"barlitre/circuit/duty"
@@ -11,6 +12,7 @@ import (
 // nothing and works out no elimination anew: what a long stretch allocates is what a short
 // one does, to be begun and ended.
 func TestSteadyStepsAllocateNothing(t *testing.T) {
+	defer debug.SetGCPercent(debug.SetGCPercent(-1)) // a collection allocates on its own account
 	many, axes, d := sections(2)
 	for _, c := range []struct {
 		name, text string
@@ -20,13 +22,13 @@ func TestSteadyStepsAllocateNothing(t *testing.T) {
 		plain := *c.d
 		plain.Sampled = true
 		d := dithered(&plain, c.axes)
-		cycles := repeated(d, 16)
+		cycles := repeated(d, 14)
 		k, found := Compile(build(t, c.text), c.axes, cycles)
 		if k == nil {
 			t.Fatal(found)
 		}
 		s := k.Series(cycles)
-		n := len(s.T) / 16
+		n := len(s.T) / 14
 		r := newRun(k, k.Defaults(), trialOil, s)
 		at := 0
 		var st State
@@ -40,8 +42,8 @@ func TestSteadyStepsAllocateNothing(t *testing.T) {
 			})
 		}
 		balance(4 * n)
-		// What else goes on in the program may allocate too, but not in each of three cycles.
-		if few, all := balance(8), min(balance(n), balance(n), balance(n)); all > few {
+		// The test program itself allocates now and then, but not in both of two cycles.
+		if few, all := balance(8), min(balance(n), balance(n)); all > few {
 			t.Errorf("%s: a cycle of %d steps allocates %g times, 8 steps %g times", c.name, n, all, few)
 		}
 	}

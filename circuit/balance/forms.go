@@ -12,6 +12,9 @@ type aim struct {
 	wary   bool    // it is given up at the first step that has to be halved
 }
 
+// weighed reports whether rows may weigh their bound and G against one another.
+func (a aim) weighed() bool { return a.smooth || a.delta > 0 }
+
 // row turns G, x and the bounds into a residual and the two weights of its
 // Jacobian row: dr_i = wx·dx_i + wg·dG_i.
 func (a aim) row(x, g, lo, hi, weight float64) (r, wx, wg float64) {
@@ -72,7 +75,7 @@ func (s *Solver) norm(p Problem, x []float64, a aim, slopes bool) float64 {
 		p.Eval(x, s.rows, nil)
 	}
 	s.now.slopes = slopes
-	if a.smooth || a.delta > 0 {
+	if a.weighed() {
 		s.smoothResidual(x, a)
 	} else {
 		s.residual(x)

@@ -43,7 +43,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			return false, it
 		}
 		if !s.now.slopes {
-			if left := norm * norm / before; planned && s.used == &s.plans && !repeated && !s.halved && 4*left <= tol && s.again(p, x, norm) {
+			if left := norm * norm / before; planned && !a.weighed() && !repeated && !s.halved && 4*left <= tol && s.again(p, x, norm) {
 				norm, before, repeated = s.now.norm, norm, true
 				continue
 			}
@@ -55,10 +55,7 @@ func (s *Solver) iterate(p Problem, x []float64, a aim, maxIt int) (bool, int) {
 			return false, it
 		}
 		norm = s.lineSearch(p, x, a, planned)
-		if norm > lostShare*max(1, before) {
-			return false, it + 1
-		}
-		if a.wary && s.halved {
+		if norm > lostShare*max(1, before) || a.wary && s.halved {
 			return false, it + 1
 		}
 		s.hist[it%len(s.hist)] = norm

@@ -202,9 +202,9 @@ func TestWeightedPlanAgainstLibrary(t *testing.T) {
 			}
 			w := &s.soft
 			w.lay(s.j, s.rim, s.steep, shift)
-			if p := w.get(&w.entries, s.maker); !p.sparse || !s.factored(&w.plans, w.val, s.loadWeighted(p)) {
+			if p := w.get(&w.entries, s.maker); !p.sparse || !s.factored(&w.plans, w.val, s.load(&w.plans, s.rim)) {
 				w.remake(&w.entries, s.maker)
-				if !w.last.sparse || !s.factored(&w.plans, w.val, s.loadWeighted(w.last)) {
+				if !w.last.sparse || !s.factored(&w.plans, w.val, s.load(&w.plans, s.rim)) {
 					continue // singular
 				}
 			}

@@ -115,14 +115,14 @@ func (p *plan) met(key []uint64) bool {
 // planned takes the Newton step from x with a plan, if there is one and it works; a long
 // step it only finds, and notes so in s.far.
 func (s *Solver) planned(x []float64, a aim) bool {
-	if a.smooth || a.delta > 0 {
+	if a.weighed() {
 		return s.plannedWeighted(x, a)
 	}
 	p := s.plans.get(&s.j.entries, s.maker)
 	if !p.sparse {
 		return false
 	}
-	if !s.factored(&s.plans, s.j.val, s.load()) {
+	if !s.factored(&s.plans, s.j.val, s.load(&s.plans, s.Weight)) {
 		p.bad++
 		return false
 	}
@@ -176,21 +176,21 @@ func (s *Solver) numbers() bool {
 
 // step solves with the factors of the last plan for the present residual.
 func (s *Solver) step() {
-	moved := s.load()
+	moved := s.load(&s.plans, s.Weight)
 	s.plans.last.solve(s.j.val, s.plans.work, moved)
 }
 
-// load puts the residual into the room of the plans, and the steps of unknowns on a bound; it
-// reports whether any of these moves.
-func (s *Solver) load() (moved bool) {
-	work, n := s.plans.work, s.n
+// load puts the residual into the room of plans, and the steps of unknowns on a bound, whose rows are
+// rim times these; it reports whether any of them moves.
+func (s *Solver) load(of *plans, rim []float64) (moved bool) {
+	work, n := of.work, s.n
 	copy(work, s.r)
 	s.dx = work[n : 2*n]
-	for _, i := range s.plans.last.fixed {
+	for _, i := range of.last.fixed {
 		r := s.r[i]
 		s.dx[i] = 0
 		if r != 0 {
-			s.dx[i] = -r / s.Weight[i]
+			s.dx[i] = -r / rim[i]
 			moved = true
 		}
 	}

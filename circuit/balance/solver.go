@@ -99,7 +99,7 @@ type point struct {
 
 // NewSolver makes the workspace for n unknowns, all without bounds.
 func NewSolver(n int) *Solver {
-	s := &Solver{n: n, maker: newPlanner(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), soft: newWeighted(n), past: newPast(n)}
+	s := &Solver{n: n, maker: newPlanner(n), j: newSlopes(n), Long: make([]bool, n), plans: newPlans(n), soft: weighted{plans: newPlans(n)}, past: newPast(n)}
 	for _, p := range []*[]float64{&s.Lo, &s.Hi, &s.Weight, &s.r, &s.dx, &s.xt, &s.best, &s.start, &s.anchor, &s.mark, &s.rim, &s.steep, &s.guessed.g, &s.guessed.r} {
 		*p = make([]float64, n)
 	}
@@ -116,9 +116,8 @@ func (s *Solver) Reset() {
 		s.Lo[i], s.Hi[i], s.Weight[i], s.Long[i] = math.Inf(-1), math.Inf(1), 1, false
 	}
 	s.Foretell, s.far, s.now = false, false, point{}
-	s.j.border(s.j.known)
+	s.border(s.j.known)
 	s.plans.forget()
-	s.soft.border(s.n)
 	s.past.forget()
 }
 
@@ -127,12 +126,17 @@ func (s *Solver) Reset() {
 // find its rows, with the known ones before them.
 func (s *Solver) Border(known int) []float64 {
 	if s.rows == nil || known != s.j.known {
-		s.j.border(known)
-		s.soft.border(s.n)
+		s.border(known)
 		s.rows = make([]float64, known+s.n, known+s.n+1) // room for place 0, if there are no unknowns
 		s.g = s.rows[known:]
 	}
 	return s.rows
+}
+
+// border makes room for known numbers and forgets all slopes, and what was weighed of them.
+func (s *Solver) border(known int) {
+	s.j.border(known)
+	s.soft.border(s.n)
 }
 
 // Restate asks the problem for its steady slopes again (Slopes.AddSteady): something has changed them.
@@ -161,12 +165,9 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 	}
 	ok, it := s.iterate(p, x, aim{wary: turned}, warmSteps)
 	if !ok && turned {
-		copy(x, s.start)
-		s.j.Tangent = true
-		ok, more := s.smooth(p, x, 40)
-		s.j.Tangent = false
+		done, more := s.smoothed(p, x)
 		it += more
-		if ok {
+		if done {
 			s.past.begin(x)
 			return Result{Rung: WarmSmooth, Iterations: it, Norm: s.now.norm}
 		}
@@ -196,11 +197,20 @@ func (s *Solver) Solve(p Problem, x []float64, levels int, cold func(level int, 
 	return res
 }
 
+// smoothed runs smooth from the start, as the first rung of the ladder does.
+func (s *Solver) smoothed(p Problem, x []float64) (bool, int) {
+	copy(x, s.start)
+	s.j.Tangent = true
+	defer func() { s.j.Tangent = false }()
+	return s.smooth(p, x, smoothSteps)
+}
+
 // A guess that leaves more than poorGuess is weighed against where it started; warmSteps bounds
-// the iterations from either.
+// the iterations from either, smoothSteps those of the smoothed form from the step before.
 const (
-	poorGuess = 1e-3
-	warmSteps = 15
+	poorGuess   = 1e-3
+	warmSteps   = 15
+	smoothSteps = 40
 )
 
 // keepGuess goes back to the start from a guess that does not leave much less than the start does,
@@ -251,7 +261,7 @@ func (s *Solver) ladder(p Problem, x []float64, total, levels int, cold func(lev
 	}
 	eased := func() (bool, int) { return s.eased(p, x) }
 	rungs := []rung{
-		{WarmSmooth, -1, smooth(40)}, {Cold, 0, newton(30)}, {ColdSmooth, 0, smooth(60)},
+		{WarmSmooth, -1, smooth(smoothSteps)}, {Cold, 0, newton(30)}, {ColdSmooth, 0, smooth(60)},
 		{Eased, -1, eased}, {Eased, 0, eased},
 		{WarmTransient, -1, transient(1)}, {ColdTransient, 0, transient(10)},
 	}

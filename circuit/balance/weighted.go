@@ -9,12 +9,6 @@ type weighted struct {
 	to []int32 // of each entry of the slopes, where it counts
 }
 
-func newWeighted(n int) weighted {
-	w := weighted{plans: newPlans(n)}
-	w.border(n)
-	return w
-}
-
 // border forgets all entries but the diagonal.
 func (w *weighted) border(n int) {
 	w.val, w.row, w.col, w.to = w.val[:0], w.row[:0], w.col[:0], w.to[:0]
@@ -70,21 +64,9 @@ func (s *Solver) plannedWeighted(x []float64, a aim) bool {
 		if !p.sparse {
 			return false
 		}
-		if s.factored(&w.plans, w.val, s.loadWeighted(p)) {
+		if s.factored(&w.plans, w.val, s.load(&w.plans, s.rim)) {
 			return s.gone(x)
 		}
 	}
 	return false
-}
-
-// loadWeighted is load for a step whose rows are weighed.
-func (s *Solver) loadWeighted(p *plan) (moved bool) {
-	work, n := s.soft.work, s.n
-	copy(work, s.r)
-	s.dx = work[n : 2*n]
-	for _, i := range p.fixed {
-		s.dx[i] = -s.r[i] / s.rim[i]
-		moved = moved || s.r[i] != 0
-	}
-	return moved
 }
