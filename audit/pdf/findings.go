@@ -82,6 +82,7 @@ func (l *layout) certificate() {
 		}
 	}
 	t.note = "What a node or an actuator was left with at its worst time step, and what the energy balance lacks, as a share of what came in. " +
+		"By fall-back: steps that were found another way than by Newton's method from the step before, to the same limits. " +
 		"A closure above " + units.Format(audit.ClosureLimit, units.Percent, 1) + " is reported as a fault."
 	t.title = "Certificate of the balance"
 	l.table(t)
