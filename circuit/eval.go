@@ -131,7 +131,6 @@ type hot struct {
 	converters []*converterModel
 	slowly     []slowModel
 	forces     []force
-	families   families
 	solved     float64 // instant of the last balance [s]
 	asked      []asked // by axis, of the last balance
 }
@@ -182,7 +181,6 @@ func (r *run) sort() {
 			r.forces = append(r.forces, force{i, r.forceUnit(row)})
 		}
 	}
-	r.families = familiesOf(r.models)
 	for _, m := range r.models {
 		if g, ok := m.(*gearboxModel); ok {
 			r.gears = append(r.gears, g)
@@ -214,7 +212,9 @@ func (r *run) Eval(_, _ []float64, j *balance.Slopes) {
 		e.add(s.sigma, -e.val(s.speed))
 		e.same(s.sigma, s.speed, -1)
 	}
-	r.families.eval(e)
+	for _, m := range r.models {
+		m.eval(e)
+	}
 }
 
 // leaks sets the rows of nodes to what ties them to tank, and adds what ties them to

@@ -314,7 +314,9 @@ func (r *run) bookAll() {
 	clear(b.sums)
 	b.pulsed = false
 	clear(b.shaft)
-	r.families.book(b)
+	for _, m := range r.models {
+		m.book(b)
+	}
 	for _, g := range r.gears {
 		g.bookTorque(b)
 	}
