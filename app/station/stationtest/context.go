@@ -43,6 +43,8 @@ type Context struct {
 	PickedFile string // the file that the user picks, "" = none
 	SaveTo     string // where the user saves
 	Cancelling bool   // the user cancels what takes long
+	// Held is read instead of the document's solution, so that it stays the same while a station is told of it; nil = the document's.
+	Held *audit.Solution
 }
 
 // New opens a sample, "" for the empty audit, and waits until it is solved.
@@ -188,9 +190,12 @@ func (c *Context) View() *station.View { return &c.Seen }
 // Pick takes another.
 func (c *Context) Pick(circuit string) { c.Picked = circuit }
 
-// Solution is that of the document, of two circuits.
+// Solution is the one held or that of the document, of two circuits.
 func (c *Context) Solution() *audit.Solution {
-	s, _ := c.Document.Solution()
+	s := c.Held
+	if s == nil {
+		s, _ = c.Document.Solution()
+	}
 	return s.Beside(c.Beside())
 }
 
