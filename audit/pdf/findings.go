@@ -47,9 +47,10 @@ func (l *layout) where(f circuit.Finding) string {
 	return strings.Join(parts, ", ")
 }
 
-// method prints the equations with their sources, and how well they were solved.
+// method prints how well the equations were solved, which a reader asks first, and then these with their sources.
 func (l *layout) method() {
-	t := table{cols: []column{{"of", false}, {"equation", false}, {"source", false}}}
+	l.certificate()
+	t := table{title: "Equations and their sources", cols: []column{{"of", false}, {"equation", false}, {"source", false}}}
 	last := ""
 	for _, m := range l.r.Method {
 		r := row{cells: []string{m.Of, m.Text, m.Source}, carry: m.Of}
@@ -60,7 +61,6 @@ func (l *layout) method() {
 		t.rows = append(t.rows, r)
 	}
 	l.table(t)
-	l.certificate()
 }
 
 // certificate prints the worst residuals of every run and how its energies close.
